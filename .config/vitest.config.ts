@@ -1,0 +1,11 @@
+import { defineConfig } from 'vitest/config';
+
+export default defineConfig({
+  test: {
+    root: new URL('..', import.meta.url).pathname,
+    include: ['test/**/*.test.ts'],
+    exclude: ['test/bench/**', 'test/fuzz/**'],
+    testTimeout: 30_000,
+    maxWorkers: 2,
+  },
+});

@@ -1,0 +1,140 @@
+import type { Centreline } from '../layout/types.ts';
+import type {
+  AcceptEntry,
+  ChannelEntry,
+  PortCondition,
+  ProcessName,
+  RunSheet,
+  TubingPiece,
+} from '../runsheet/types.ts';
+
+/** Where a value came from, printed beside it: the run sheet, the drawing, usual practice of a process, or a default. */
+export type Origin = 'run sheet' | 'drawing' | 'usual practice, no source' | 'default';
+
+export interface Sourced<T> {
+  readonly value: T;
+  readonly origin: Origin;
+}
+
+export interface Fluid {
+  /** "water", "glycerol in water, 30 % by mass", "as given" */
+  readonly name: string;
+  readonly temperatureK: number;
+  readonly viscosityPaS: number;
+  readonly densityKgM3: number;
+  /** Published source of the values, or "run sheet". */
+  readonly source: string;
+  /** Viscosity of the same fluid at another temperature (tubing); a custom fluid ignores it. */
+  readonly viscosityAt: (temperatureK: number) => number;
+}
+
+export interface ChipLayer {
+  /** As drawn (or "" for strokes in no layer). */
+  readonly name: string;
+  /** Index into Chip.planes. */
+  readonly plane: number;
+  /** NaN when no depth is known: finding missing-depth. */
+  readonly depthM: number;
+  readonly depthOrigin: Origin;
+  readonly profile: 'rectangle' | 'isotropic';
+}
+
+/** One drawn stroke with its width and depth. All its centrelines share them. */
+export interface Channel {
+  /** As shown everywhere: unique (`lane`, `lane-2`, `channel-7`). */
+  readonly name: string;
+  /** As drawn; null when unnamed. Channels that share it share their settings. */
+  readonly drawnName: string | null;
+  readonly ordinal: number;
+  /** Index into Chip.layers. */
+  readonly layer: number;
+  readonly plane: number;
+  /** As drawn (the mask's), mm; NaN when unsized. */
+  readonly drawnWidthMm: number;
+  /** Of the rectangular duct that stands for it (isotropic: mask + π·depth/2), mm. NaN when unsized or depth unknown for isotropic. */
+  readonly ductWidthMm: number;
+  /** Half the width of the strip (isotropic: mask/2 + depth), mm: where the walls stand. */
+  readonly stripHalfWidthMm: number;
+  /** NaN when unknown. */
+  readonly depthMm: number;
+  readonly depthOrigin: Origin;
+  readonly profile: 'rectangle' | 'isotropic';
+  readonly linecap: 'butt' | 'round' | 'square';
+  /** In mm (drawing coordinates × unit), y down. */
+  readonly centrelines: readonly Centreline[];
+  readonly disguises: readonly string[];
+  readonly settings: ChannelEntry | null;
+}
+
+export interface Port {
+  /** Unique; unnamed ones are shown as `port-3`. */
+  readonly name: string;
+  readonly drawnName: string | null;
+  readonly ordinal: number;
+  readonly xMm: number;
+  readonly yMm: number;
+  readonly radiusMm: number;
+  readonly condition: PortCondition;
+  readonly tubing: readonly TubingPiece[];
+  readonly expect: 'in' | 'out' | null;
+}
+
+export interface ChipEdge {
+  readonly name: string;
+  /** Outer rings, mm, x0 y0 x1 y1 …, first point repeated at the end. */
+  readonly rings: readonly Float64Array[];
+  /** Sides of the smallest rectangle at any angle round it, mm, longer first. */
+  readonly sidesMm: readonly [number, number];
+}
+
+/** All limits with their origin; null = nobody gave one and no process implies one: not checked, listed as not run. */
+export interface ChipLimits {
+  readonly minWidthM: Sourced<number> | null;
+  readonly minWallM: (depthM: number) => Sourced<number> | null;
+  readonly maxWidthToDepth: Sourced<number> | null;
+  readonly maxDepthToWidth: Sourced<number> | null;
+  readonly edgeMarginM: Sourced<number> | null;
+  readonly portGapM: Sourced<number> | null;
+  readonly portDiameterM: Sourced<readonly [number, number]>;
+  readonly portGridM: Sourced<number> | null;
+  readonly maxPressurePa: Sourced<number> | null;
+  readonly minPressurePa: Sourced<number> | null;
+  readonly maxReynolds: Sourced<number>;
+  readonly minCornerAngleRad: Sourced<number> | null;
+  readonly stiffnessPa: Sourced<number> | null;
+}
+
+/** A fault found while reading or laying out: becomes a finding of findings/. */
+export type ReadingFault =
+  | { readonly kind: 'unsized-stroke'; readonly name: string; readonly xMm: number; readonly yMm: number }
+  | { readonly kind: 'filled-outline'; readonly name: string; readonly xMm: number; readonly yMm: number; readonly stroked: boolean }
+  | { readonly kind: 'assumed-scale'; readonly reason: string }
+  | { readonly kind: 'missing-depth'; readonly channel: string; readonly layer: string; readonly xMm: number; readonly yMm: number }
+  | { readonly kind: 'disguised-stroke'; readonly channel: string; readonly by: string; readonly xMm: number; readonly yMm: number };
+
+export interface Chip {
+  /** The layout's file name as given, without folders. */
+  readonly file: string;
+  readonly layoutSha256: string;
+  readonly unitMm: number;
+  readonly unitReason: string;
+  /** Size of the drawing (viewport) in mm. */
+  readonly widthMm: number | null;
+  readonly heightMm: number | null;
+  readonly planes: readonly string[];
+  readonly layers: readonly ChipLayer[];
+  /** Channels that have a width; unsized strokes are faults only. */
+  readonly channels: readonly Channel[];
+  readonly ports: readonly Port[];
+  readonly edge: ChipEdge | null;
+  readonly sizeMm: readonly [number, number] | null;
+  readonly ignored: Readonly<Record<string, number>>;
+  readonly faults: readonly ReadingFault[];
+  readonly fluid: Fluid;
+  readonly joinWithinMm: number;
+  readonly joints: 'resolved' | 'centreline';
+  readonly process: ProcessName | null;
+  readonly limits: ChipLimits;
+  readonly accept: readonly AcceptEntry[];
+  readonly sheet: RunSheet | null;
+}

@@ -1,0 +1,72 @@
+/**
+ * The layout in drawing units (root user units, y down), before any run sheet is known.
+ * Curves are already cut into straight pieces; each piece keeps its curve's bend radius.
+ */
+
+export interface Centreline {
+  /** x0 y0 x1 y1 … ; consecutive points differ; a closed centreline repeats its first point at the end. */
+  readonly points: Float64Array;
+  readonly closed: boolean;
+  /** One per piece (points − 1): the curve's radius of curvature there, 0 for a straight piece. */
+  readonly bendRadius: Float64Array;
+}
+
+/** What every drawn thing carries, so that names and findings can point into the drawing. */
+export interface Drawn {
+  /** Document order among rendered shapes, from 0. */
+  readonly ordinal: number;
+  readonly name: string | null;
+  readonly id: string | null;
+  /** Names of the enclosing groups that have one, outermost first. */
+  readonly groups: readonly string[];
+}
+
+export interface Stroke extends Drawn {
+  readonly kind: 'stroke';
+  /** Full stroke width in drawing units; null when the transform is not a similarity (unsized-stroke). */
+  readonly width: number | null;
+  readonly linecap: 'butt' | 'round' | 'square';
+  readonly centrelines: readonly Centreline[];
+  /** `data-depth` of the element, else of the nearest group that has one, as written. */
+  readonly dataDepth: string | null;
+  readonly disguises: readonly ('clip-path' | 'mask' | 'opacity' | 'marker' | 'filter')[];
+}
+
+/** A circle, or an ellipse or closed filled path that is round within 1 %. Whether it is a port is for chip/ to say. */
+export interface Hole extends Drawn {
+  readonly kind: 'hole';
+  readonly x: number;
+  readonly y: number;
+  readonly radius: number;
+  readonly filled: boolean;
+  readonly stroked: boolean;
+}
+
+/** A closed shape that is filled and not round: never a centreline. */
+export interface Outline extends Drawn {
+  readonly kind: 'outline';
+  readonly rings: readonly Float64Array[];
+  readonly stroked: boolean;
+}
+
+/** Drawn and not read: text, images, dashed strokes, open fills … Geometry kept, for a chip edge may be among them. */
+export interface Ignored extends Drawn {
+  readonly kind: 'ignored';
+  /** text, image, dashed stroke, fill … : the key in the count of ignored shapes. */
+  readonly reason: string;
+  readonly rings: readonly Float64Array[];
+}
+
+export type LayoutItem = Stroke | Hole | Outline | Ignored;
+
+export interface Layout {
+  readonly unitMm: number;
+  readonly unitStated: boolean;
+  readonly unitReason: string;
+  readonly widthMm: number | null;
+  readonly heightMm: number | null;
+  /** In document order. */
+  readonly items: readonly LayoutItem[];
+  /** Counts of things passed over that have no geometry of their own. */
+  readonly unread: Readonly<Record<string, number>>;
+}
