@@ -1,4 +1,6 @@
 import type { Chip } from '../chip/types.ts';
+import type { Nearness } from '../geometry/near.ts';
+import type { StripEnds } from '../geometry/strip.ts';
 
 export type NodeKind = 'port' | 'junction' | 'end' | 'step';
 
@@ -49,7 +51,51 @@ export interface Network {
   /** 0 for a straight piece. */
   readonly segmentBendRadiusMm: Float64Array;
 
+  /** How the network came from the drawing: for findings that must point into it, and for joints. */
+  readonly trace: NetworkTrace;
+
   readonly nodeName: (node: number) => string;
   readonly reachName: (reach: number) => string;
   readonly segmentName: (segment: number) => string;
+}
+
+/** What became of one end of a centreline. */
+export type EndFate = 'open' | 'joined' | 'port' | 'left out';
+
+/**
+ * The drawing side of the network. Centrelines, pieces and positions s (mm along a centreline) as in geometry/pieces.ts;
+ * end 2c is the start of centreline c, 2c + 1 its last point.
+ */
+export interface NetworkTrace {
+  readonly near: Nearness;
+  /** Stretches of centreline between neighbouring nodes outside wells, by centreline and position; a chain of them is a reach. */
+  readonly arcCount: number;
+  readonly arcCentreline: Int32Array;
+  readonly arcFrom: Float64Array;
+  readonly arcTo: Float64Array;
+  readonly arcReach: Int32Array;
+  /** 1 where the reach runs against the drawn direction of the arc. */
+  readonly arcReversed: Uint8Array;
+  /** Node at arcFrom and at arcTo; −1 where rule 7 made the place an inner point of the reach. */
+  readonly arcNodeFrom: Int32Array;
+  readonly arcNodeTo: Int32Array;
+  /** Arcs of centreline c are firstArc[c] … firstArc[c + 1] − 1. */
+  readonly firstArc: Int32Array;
+  /** Per end (2c, 2c + 1). A closed centreline's ends are 'joined'. */
+  readonly endFate: readonly EndFate[];
+  /** Node at the end; −1 where the end was left out or merged into a reach. */
+  readonly endNode: Int32Array;
+  /** Length of the carried-on piece (rule 3), mm. */
+  readonly endExtensionMm: Float64Array;
+  /** Length left out at the end (rules 4 and 6), mm; NaN-free, 0 when nothing was. */
+  readonly endLeftOutMm: Float64Array;
+  /** Centreline that the end joined by rule 3, −1 for none. */
+  readonly endJoinedTo: Int32Array;
+  /** Seams between equal strips that meet end to end (rule 5). */
+  readonly strips: StripEnds;
+  /** Places of nodes on centrelines: columns sorted by node; a well is a stretch from … to. */
+  readonly firstPlace: Int32Array;
+  readonly placeCentreline: Int32Array;
+  readonly placeFrom: Float64Array;
+  readonly placeTo: Float64Array;
 }

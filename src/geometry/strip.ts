@@ -1,0 +1,161 @@
+import { endsAtVertex, type Pieces, startsAtVertex } from './pieces.ts';
+
+/**
+ * The strip of a channel: the etched area within half its width of the centreline, round at inner vertices, square at
+ * its ends. It is handled piece by piece: a rectangle along each piece and a disc at each inner vertex.
+ *
+ * Slack decides *whether* a point counts as inside; lengths are always measured to the exact wall or square end.
+ */
+export interface StripEnds {
+  /** True where a centreline end is a seam: an equal strip goes on there, so the end is an inner vertex. Index 2c start, 2c + 1 end. */
+  readonly seam: Uint8Array;
+}
+
+/** Whether the point is inside the part of the strip that belongs to one piece, within slack. */
+export function isInPieceStrip(
+  pieces: Pieces,
+  piece: number,
+  x: number,
+  y: number,
+  slackMm: number,
+  ends: StripEnds | null,
+): boolean {
+  const half = pieces.half[piece] + slackMm;
+  const ax = pieces.x1[piece];
+  const ay = pieces.y1[piece];
+  const bx = pieces.x2[piece];
+  const by = pieces.y2[piece];
+  const length = pieces.length[piece];
+  const ux = (bx - ax) / length;
+  const uy = (by - ay) / length;
+  const along = (x - ax) * ux + (y - ay) * uy;
+  const across = (y - ay) * ux - (x - ax) * uy;
+  if (Math.abs(across) <= half && along >= -slackMm && along <= length + slackMm) return true;
+  if (along < 0 && roundAtStart(pieces, piece, ends)) return Math.hypot(x - ax, y - ay) <= half;
+  if (along > length && roundAtEnd(pieces, piece, ends)) return Math.hypot(x - bx, y - by) <= half;
+  return false;
+}
+
+/**
+ * Adds to `into` the stretches [from, to] (distance along a→b) of the straight line a→b that lie inside the strip of one
+ * piece. A stretch that leaves through a square end is cut at the exact end, also where slack let it in.
+ */
+export function addStripStretches(
+  into: number[],
+  pieces: Pieces,
+  piece: number,
+  ax: number,
+  ay: number,
+  bx: number,
+  by: number,
+  slackMm: number,
+  ends: StripEnds | null,
+): void {
+  const span = Math.hypot(bx - ax, by - ay);
+  if (span === 0) return;
+  const half = pieces.half[piece];
+  const px = pieces.x1[piece];
+  const py = pieces.y1[piece];
+  const qx = pieces.x2[piece];
+  const qy = pieces.y2[piece];
+  const length = pieces.length[piece];
+  const ux = (qx - px) / length;
+  const uy = (qy - py) / length;
+  const dx = (bx - ax) / span;
+  const dy = (by - ay) / span;
+  // In the piece's own frame: u along, v across; the line is (u0 + t du, v0 + t dv).
+  const u0 = (ax - px) * ux + (ay - py) * uy;
+  const v0 = (ay - py) * ux - (ax - px) * uy;
+  const du = dx * ux + dy * uy;
+  const dv = dy * ux - dx * uy;
+  const startIsRound = roundAtStart(pieces, piece, ends);
+  const endIsRound = roundAtEnd(pieces, piece, ends);
+
+  const lateral = stretchWithin(v0, dv, -half, half, span);
+  if (lateral !== null) {
+    const low = -(startIsRound ? TINY_MM : slackMm);
+    const high = length + (endIsRound ? TINY_MM : slackMm);
+    const along = stretchWithin(u0, du, low, high, span);
+    if (along !== null) {
+      const from = Math.max(lateral[0], along[0]);
+      let to = Math.min(lateral[1], along[1]);
+      const leavesThroughEnd = along[1] < lateral[1];
+      if (leavesThroughEnd) {
+        const exact = stretchWithin(u0, du, startIsRound ? low : 0, endIsRound ? high : length, span);
+        to = exact === null ? from : Math.max(from, Math.min(to, exact[1]));
+      }
+      if (to >= from) into.push(from, to);
+    }
+  }
+  if (startIsRound) addDiscStretch(into, px, py, half, ax, ay, dx, dy, span);
+  if (endIsRound) addDiscStretch(into, qx, qy, half, ax, ay, dx, dy, span);
+}
+
+/** How far the stretches, taken together, reach without a gap from `from` on. Sorts `stretches` by start. */
+export function coveredUpTo(stretches: readonly number[], from: number, slackMm: number): number {
+  let reach = from;
+  let entered = false;
+  const order = [];
+  for (let k = 0; k < stretches.length; k += 2) order.push(k);
+  order.sort((a, b) => stretches[a] - stretches[b]);
+  for (const k of order) {
+    const gap = stretches[k] - reach;
+    if (gap > (entered ? TINY_MM : slackMm)) break;
+    if (stretches[k + 1] >= reach) {
+      reach = stretches[k + 1];
+      entered = true;
+    }
+  }
+  return reach;
+}
+
+/** Far below any drawn length, far above rounding: gaps of this size between parts of one strip are no gaps. */
+const TINY_MM = 1e-9;
+
+function roundAtStart(pieces: Pieces, piece: number, ends: StripEnds | null): boolean {
+  return startsAtVertex(pieces, piece) || (ends !== null && ends.seam[2 * pieces.centreline[piece]] === 1);
+}
+
+function roundAtEnd(pieces: Pieces, piece: number, ends: StripEnds | null): boolean {
+  return endsAtVertex(pieces, piece) || (ends !== null && ends.seam[2 * pieces.centreline[piece] + 1] === 1);
+}
+
+/** The t in [0, span] with low ≤ w0 + t dw ≤ high. */
+function stretchWithin(
+  w0: number,
+  dw: number,
+  low: number,
+  high: number,
+  span: number,
+): readonly [number, number] | null {
+  // Over the whole span a slope below this moves the line by less than rounding already has.
+  if (Math.abs(dw) * span < 1e-13 * (1 + Math.abs(w0))) {
+    return w0 >= low - TINY_MM && w0 <= high + TINY_MM ? [0, span] : null;
+  }
+  const t1 = (low - w0) / dw;
+  const t2 = (high - w0) / dw;
+  const from = Math.max(0, Math.min(t1, t2));
+  const to = Math.min(span, Math.max(t1, t2));
+  return from <= to ? [from, to] : null;
+}
+
+function addDiscStretch(
+  into: number[],
+  cx: number,
+  cy: number,
+  radius: number,
+  ax: number,
+  ay: number,
+  dx: number,
+  dy: number,
+  span: number,
+): void {
+  const b = (cx - ax) * dx + (cy - ay) * dy;
+  const across = (cy - ay) * dx - (cx - ax) * dy;
+  const halfChordSquared = radius * radius - across * across;
+  if (halfChordSquared < 0) return;
+  const halfChord = Math.sqrt(halfChordSquared);
+  const from = Math.max(0, b - halfChord);
+  const to = Math.min(span, b + halfChord);
+  if (from <= to) into.push(from, to);
+}

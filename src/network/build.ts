@@ -1,0 +1,264 @@
+import type { Chip } from '../chip/types.ts';
+import { findNearPairs } from '../geometry/near.ts';
+import { toPieces } from '../geometry/pieces.ts';
+import { type Draft, END_FREE, END_IN_PORT, Marks, NodeUnion, pointAt, toEnds } from './draft.ts';
+import { joinEnds } from './ends.ts';
+import { markMeetings } from './meetings.ts';
+import { nameNodes, nameReach, nameSegment } from './names.ts';
+import { type Kept, leaveOutEndPieces } from './overshoot.ts';
+import { type Arcs, type Reaches, toArcs, toReaches } from './reaches.ts';
+import { type Stops, stopsByNode, toStops } from './stops.ts';
+import { findTrims } from './trimming.ts';
+import { type EndFate, type Network, NODE_KINDS, type NodeKind } from './types.ts';
+import { markWells } from './wells.ts';
+
+/**
+ * Joins the channels and ports of a chip into a network of nodes, reaches and segments by the joining rules.
+ *
+ * Errors: InputError when a limit on segments or near pairs is passed. Cost: n log n in the number of drawn pieces, plus
+ * the pairs of pieces that really come near each other.
+ */
+export function buildNetwork(chip: Chip): Network {
+  const pieces = toPieces(chip.channels);
+  const near = findNearPairs(
+    pieces,
+    nearnessMm(chip),
+    (piece) => (chip.channels[pieces.channel[piece]].linecap === 'square' ? Math.SQRT2 : 1),
+    chip.file,
+  );
+  const draft: Draft = {
+    chip,
+    near,
+    pieces,
+    slackMm: chip.joinWithinMm,
+    nodes: new NodeUnion(),
+    marks: new Marks(),
+    ends: toEnds(pieces),
+    portCount: chip.ports.length,
+  };
+  chip.ports.forEach(() => {
+    draft.nodes.add();
+  });
+  markMeetings(draft);
+  markWells(draft);
+  joinEnds(draft);
+  const stops = toStops(draft);
+  const kept = leaveOutEndPieces(draft, stops);
+  const { trims, strips } = findTrims(draft, stops, kept);
+  const arcs = toArcs(draft, stops, kept);
+  const reaches = toReaches(draft, arcs, trims);
+  return toNetwork(draft, stops, kept, arcs, reaches, strips);
+}
+
+/** Strips nearer than this are of interest to some rule: the join slack, or the least wall. */
+function nearnessMm(chip: Chip): number {
+  let wall = 0;
+  for (const layer of chip.layers) {
+    const limit = chip.limits.minWallM(Number.isNaN(layer.depthM) ? 0 : layer.depthM);
+    if (limit !== null) wall = Math.max(wall, limit.value * 1e3);
+  }
+  return Math.max(chip.joinWithinMm, wall);
+}
+
+function toNetwork(
+  draft: Draft,
+  stops: Stops,
+  kept: Kept,
+  arcs: Arcs,
+  reaches: Reaches,
+  strips: Network['trace']['strips'],
+): Network {
+  const { chip, pieces } = draft;
+  const index = numberNodes(draft, reaches);
+  const degree = new Int32Array(index.count);
+  const reachFrom = reaches.from.map((root) => index.ofRoot[root]);
+  const reachTo = reaches.to.map((root) => index.ofRoot[root]);
+  for (let r = 0; r < reaches.count; r++) {
+    degree[reachFrom[r]]++;
+    degree[reachTo[r]]++;
+  }
+  const nodeKind = new Uint8Array(index.count);
+  const firstDuct = new Int32Array(index.count).fill(-1);
+  const changes = new Uint8Array(index.count);
+  for (let r = 0; r < reaches.count; r++) {
+    for (const node of [reachFrom[r], reachTo[r]]) {
+      const channel = reaches.channel[r];
+      if (firstDuct[node] < 0) firstDuct[node] = channel;
+      else if (!isSameDuct(chip, firstDuct[node], channel)) changes[node] = 1;
+    }
+  }
+  const nodePort = new Int32Array(index.count).fill(-1);
+  const portNode = new Int32Array(chip.ports.length);
+  for (let p = chip.ports.length - 1; p >= 0; p--) {
+    portNode[p] = index.ofRoot[draft.nodes.find(p)];
+    nodePort[portNode[p]] = p;
+  }
+  for (let node = 0; node < index.count; node++) {
+    nodeKind[node] = NODE_KINDS.indexOf(kindOf(nodePort[node], degree[node], changes[node] === 1));
+  }
+
+  const reachNumber = new Int32Array(reaches.count);
+  const channelReachCount = new Int32Array(chip.channels.length);
+  for (let r = 0; r < reaches.count; r++) reachNumber[r] = ++channelReachCount[reaches.channel[r]];
+
+  const { nodeX, nodeY } = placeNodes(draft, arcs, index, nodePort);
+  const segments = reaches.segments;
+  const names = nameNodes(chip, nodeKind, nodePort);
+  const reachColumns = { reachChannel: reaches.channel, reachNumber, channelReachCount };
+  const firstSegment = reaches.firstSegment;
+  return {
+    chip,
+    nodeCount: index.count,
+    nodeKind,
+    nodeX,
+    nodeY,
+    nodePort,
+    portNode,
+    reachCount: reaches.count,
+    ...reachColumns,
+    reachFrom,
+    reachTo,
+    reachDrawnMm: reaches.drawnMm,
+    reachDuctMm: reaches.ductMm,
+    reachJointMm: new Float64Array(reaches.count),
+    firstSegment,
+    segmentCount: segments.count,
+    segmentReach: Int32Array.from(segments.reach),
+    segmentX1: Float64Array.from(segments.x1),
+    segmentY1: Float64Array.from(segments.y1),
+    segmentX2: Float64Array.from(segments.x2),
+    segmentY2: Float64Array.from(segments.y2),
+    segmentDuctMm: Float64Array.from(segments.ductMm),
+    segmentBendRadiusMm: Float64Array.from(segments.bendRadius),
+    trace: toTrace(),
+    nodeName: names,
+    reachName: (reach) => nameReach(chip, reachColumns, reach),
+    segmentName: (segment) => nameSegment(chip, reachColumns, firstSegment, segments.reach, segment),
+  };
+
+  function toTrace(): Network['trace'] {
+    const n = pieces.centrelineCount;
+    const firstArc = new Int32Array(n + 1);
+    for (const c of arcs.centreline) firstArc[c + 1]++;
+    for (let c = 0; c < n; c++) firstArc[c + 1] += firstArc[c];
+    const toNode = (root: number): number => index.ofRoot[root] ?? -1;
+    const arcNodeFrom = Int32Array.from(arcs.nodeFrom, toNode);
+    const arcNodeTo = Int32Array.from(arcs.nodeTo, toNode);
+    const endNode = new Int32Array(2 * n).fill(-1);
+    const endFate: EndFate[] = new Array(2 * n);
+    for (let c = 0; c < n; c++) {
+      const hasArcs = firstArc[c + 1] > firstArc[c];
+      for (const end of [2 * c, 2 * c + 1]) {
+        endFate[end] = fateOf(draft, kept, end);
+        if (endFate[end] === 'left out' || !hasArcs || pieces.centrelineClosed[c] === 1) continue;
+        endNode[end] = end === 2 * c ? arcNodeFrom[firstArc[c]] : arcNodeTo[firstArc[c + 1] - 1];
+      }
+    }
+    const byNode = stopsByNode(draft, stops, kept.from, kept.to);
+    return {
+      near: draft.near,
+      arcCount: arcs.count,
+      arcCentreline: Int32Array.from(arcs.centreline),
+      arcFrom: Float64Array.from(arcs.from),
+      arcTo: Float64Array.from(arcs.to),
+      arcReach: reaches.arcReach,
+      arcReversed: reaches.arcReversed,
+      arcNodeFrom,
+      arcNodeTo,
+      firstArc,
+      endFate,
+      endNode,
+      endExtensionMm: draft.ends.extension,
+      endLeftOutMm: kept.leftOutMm,
+      endJoinedTo: draft.ends.joinedTo,
+      strips,
+      ...toPlaces(stops, byNode, index),
+    };
+  }
+}
+
+interface NodeNumbers {
+  readonly count: number;
+  /** Node of each root of the draft; −1 where no reach and no port is. */
+  readonly ofRoot: Int32Array;
+  readonly rootOf: number[];
+}
+
+/** Ports first in their order, then nodes in the order in which reaches come to them. */
+function numberNodes(draft: Draft, reaches: Reaches): NodeNumbers {
+  const ofRoot = new Int32Array(draft.nodes.size).fill(-1);
+  const rootOf: number[] = [];
+  const number = (root: number): void => {
+    if (ofRoot[root] >= 0) return;
+    ofRoot[root] = rootOf.length;
+    rootOf.push(root);
+  };
+  for (let p = 0; p < draft.portCount; p++) number(draft.nodes.find(p));
+  for (let r = 0; r < reaches.count; r++) {
+    number(reaches.from[r]);
+    number(reaches.to[r]);
+  }
+  return { count: rootOf.length, ofRoot, rootOf };
+}
+
+function kindOf(port: number, degree: number, changes: boolean): NodeKind {
+  if (port >= 0) return 'port';
+  if (degree === 1) return 'end';
+  return degree === 2 && changes ? 'step' : 'junction';
+}
+
+function isSameDuct(chip: Chip, a: number, b: number): boolean {
+  const one = chip.channels[a];
+  const two = chip.channels[b];
+  return one.ductWidthMm === two.ductWidthMm && one.depthMm === two.depthMm;
+}
+
+/** A port's node is at its centre, any other where the first arc that comes to it ends. */
+function placeNodes(draft: Draft, arcs: Arcs, index: NodeNumbers, nodePort: Int32Array) {
+  const nodeX = new Float64Array(index.count).fill(Number.NaN);
+  const nodeY = new Float64Array(index.count).fill(Number.NaN);
+  for (let node = 0; node < index.count; node++) {
+    if (nodePort[node] < 0) continue;
+    nodeX[node] = draft.chip.ports[nodePort[node]].xMm;
+    nodeY[node] = draft.chip.ports[nodePort[node]].yMm;
+  }
+  const at = { x: 0, y: 0 };
+  for (let a = 0; a < arcs.count; a++) {
+    for (const [root, s] of [
+      [arcs.nodeFrom[a], arcs.from[a]],
+      [arcs.nodeTo[a], arcs.to[a]],
+    ]) {
+      const node = index.ofRoot[root];
+      if (node < 0 || !Number.isNaN(nodeX[node])) continue;
+      pointAt(draft, arcs.centreline[a], s, at);
+      nodeX[node] = at.x;
+      nodeY[node] = at.y;
+    }
+  }
+  return { nodeX, nodeY };
+}
+
+function fateOf(draft: Draft, kept: Kept, end: number): EndFate {
+  if (kept.leftOutBy[end] !== null) return 'left out';
+  if (draft.pieces.centrelineClosed[end >> 1] === 1) return 'joined';
+  const state = draft.ends.state[end];
+  return state === END_FREE ? 'open' : state === END_IN_PORT ? 'port' : 'joined';
+}
+
+function toPlaces(stops: Stops, byNode: { first: Int32Array; stop: Int32Array }, index: NodeNumbers) {
+  const firstPlace = new Int32Array(index.count + 1);
+  const order: number[] = [];
+  for (let node = 0; node < index.count; node++) {
+    const root = index.rootOf[node];
+    if (root + 1 < byNode.first.length) {
+      for (let k = byNode.first[root]; k < byNode.first[root + 1]; k++) order.push(byNode.stop[k]);
+    }
+    firstPlace[node + 1] = order.length;
+  }
+  return {
+    firstPlace,
+    placeCentreline: Int32Array.from(order, (stop) => stops.centreline[stop]),
+    placeFrom: Float64Array.from(order, (stop) => stops.from[stop]),
+    placeTo: Float64Array.from(order, (stop) => stops.to[stop]),
+  };
+}

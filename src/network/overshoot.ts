@@ -1,0 +1,194 @@
+import { pieceAt } from '../geometry/pieces.ts';
+import { distanceToSegment } from '../geometry/segment.ts';
+import { isInPieceStrip } from '../geometry/strip.ts';
+import { type Draft, END_FREE, END_JOINED, endPiece, endPosition, pointAt } from './draft.ts';
+import { type NodeStops, type Stops, stopsByNode } from './stops.ts';
+
+/** The part of each centreline that is kept, by position; and what was left out at each end (2c, 2c + 1), mm. */
+export interface Kept {
+  readonly from: Float64Array;
+  readonly to: Float64Array;
+  readonly leftOutMm: Float64Array;
+  /** Why the end piece was left out. */
+  readonly leftOutBy: readonly LeftOut[];
+}
+
+export type LeftOut = 'overshoot' | 'overlap' | 'well-stub' | null;
+
+/** Two strokes that run within this angle of each other run along each other (rule 4). */
+const ALONG_RAD = (15 * Math.PI) / 180;
+
+/**
+ * Rule 4 and the last sentence of rule 6: an end piece that ends dead inside the strip it joined is left out; so is one
+ * that runs along another channel's centreline for at most twice the wider width between two joins (of two that overlap
+ * so, the narrower channel's, of equal ones the later drawn); so is a stub beyond a rim no longer than the larger of its
+ * width and the port's radius.
+ */
+export function leaveOutEndPieces(draft: Draft, stops: Stops): Kept {
+  const { pieces } = draft;
+  const n = pieces.centrelineCount;
+  const kept = {
+    from: new Float64Array(n),
+    to: new Float64Array(n),
+    leftOutMm: new Float64Array(2 * n),
+    leftOutBy: new Array<LeftOut>(2 * n).fill(null),
+  };
+  for (let c = 0; c < n; c++) {
+    const closed = pieces.centrelineClosed[c] === 1;
+    kept.from[c] = closed ? 0 : endPosition(draft, 2 * c);
+    kept.to[c] = closed ? pieces.centrelineLength[c] : endPosition(draft, 2 * c + 1);
+  }
+  const byNode = stopsByNode(draft, stops, kept.from, kept.to);
+  for (let c = 0; c < n; c++) {
+    if (pieces.centrelineClosed[c] === 1 || stops.firstStop[c] === stops.firstStop[c + 1]) continue;
+    for (const end of [2 * c, 2 * c + 1]) {
+      const cut = findCut(draft, stops, byNode, end);
+      if (cut === null) continue;
+      kept.leftOutMm[end] = Math.abs(endPosition(draft, end) - cut.position);
+      kept.leftOutBy[end] = cut.why;
+      if (end === 2 * c) kept.from[c] = cut.position;
+      else kept.to[c] = cut.position;
+    }
+  }
+  return kept;
+}
+
+interface Cut {
+  readonly position: number;
+  readonly why: LeftOut;
+}
+
+function findCut(draft: Draft, stops: Stops, byNode: NodeStops, end: number): Cut | null {
+  if (draft.ends.state[end] === END_JOINED) return findOverlap(draft, stops, byNode, end);
+  if (draft.ends.state[end] === END_FREE) return findDeadPiece(draft, stops, byNode, end);
+  return null;
+}
+
+function findDeadPiece(draft: Draft, stops: Stops, byNode: NodeStops, end: number): Cut | null {
+  const { pieces, ends, slackMm } = draft;
+  const c = end >> 1;
+  const stop = (end & 1) === 0 ? stops.firstStop[c] : stops.firstStop[c + 1] - 1;
+  const position = (end & 1) === 0 ? stops.from[stop] : stops.to[stop];
+  const length = Math.abs(endPosition(draft, end) - position);
+  if (length <= slackMm) return length > 0 ? { position, why: 'overshoot' } : null;
+  const node = draft.nodes.find(stops.node[stop]);
+  if (stops.isWell[stop] === 1 && node < draft.portCount) {
+    const width = 2 * pieces.half[endPiece(pieces, end)];
+    if (length <= Math.max(width, draft.chip.ports[node].radiusMm) + slackMm)
+      return { position, why: 'well-stub' };
+  }
+  const channels = new Set<number>();
+  for (let k = byNode.first[node]; k < byNode.first[node + 1]; k++) {
+    const other = stops.centreline[byNode.stop[k]];
+    if (other !== c) channels.add(pieces.centrelineChannel[other]);
+  }
+  const piece = endPiece(pieces, end);
+  for (let k = draft.near.firstPair[piece]; k < draft.near.firstPair[piece + 1]; k++) {
+    const pair = draft.near.pairOf[k];
+    const other = draft.near.pairA[pair] === piece ? draft.near.pairB[pair] : draft.near.pairA[pair];
+    if (pieces.centreline[other] === c || !channels.has(pieces.channel[other])) continue;
+    if (isInPieceStrip(pieces, other, ends.x[end], ends.y[end], slackMm, null))
+      return { position, why: 'overshoot' };
+  }
+  return null;
+}
+
+/** The end piece of a joined end, back to the last join with the same channel, when it runs along that channel. */
+function findOverlap(draft: Draft, stops: Stops, byNode: NodeStops, end: number): Cut | null {
+  const { pieces, ends } = draft;
+  const c = end >> 1;
+  const other = ends.joinedTo[end];
+  if (other < 0 || other === c) return null;
+  const otherChannel = pieces.centrelineChannel[other];
+  const width = 2 * pieces.half[endPiece(pieces, end)];
+  const otherWidth = 2 * pieces.half[pieces.firstPiece[other]];
+  const limit = 2 * Math.max(width, otherWidth) + draft.slackMm;
+  const atStart = (end & 1) === 0;
+  const from = endPosition(draft, end);
+  const outermost = atStart ? stops.firstStop[c] : stops.firstStop[c + 1] - 1;
+  const step = atStart ? 1 : -1;
+  for (let k = outermost + step; k >= stops.firstStop[c] && k < stops.firstStop[c + 1]; k += step) {
+    const position = atStart ? stops.from[k] : stops.to[k];
+    if (Math.abs(position - from) > limit) return null;
+    const node = draft.nodes.find(stops.node[k]);
+    let meets = false;
+    let otherEnd = -1;
+    for (let m = byNode.first[node]; m < byNode.first[node + 1]; m++) {
+      const stop = byNode.stop[m];
+      const line = stops.centreline[stop];
+      if (line === c || pieces.centrelineChannel[line] !== otherChannel) continue;
+      meets = true;
+      const e = endAt(draft, stops, stop);
+      if (e >= 0) otherEnd = e;
+    }
+    if (!meets) continue;
+    if (!runsAlong(draft, c, position, from, otherChannel, Math.min(width, otherWidth) / 2)) return null;
+    if (otherEnd >= 0) {
+      // Two end pieces overlap: only the narrower channel's, of equal ones the later drawn, is left out.
+      const channel = pieces.centrelineChannel[c];
+      const isLater = channel > otherChannel || (channel === otherChannel && c > other);
+      if (width > otherWidth || (width === otherWidth && !isLater)) return null;
+    }
+    return { position, why: 'overlap' };
+  }
+  return null;
+}
+
+/** The end of its centreline that a stop stands at, −1 when it is inner. */
+function endAt(draft: Draft, stops: Stops, stop: number): number {
+  const c = stops.centreline[stop];
+  if (draft.pieces.centrelineClosed[c] === 1) return -1;
+  if (Math.abs(stops.from[stop] - endPosition(draft, 2 * c)) <= draft.slackMm) return 2 * c;
+  if (Math.abs(stops.to[stop] - endPosition(draft, 2 * c + 1)) <= draft.slackMm) return 2 * c + 1;
+  return -1;
+}
+
+/** Whether a centreline between two positions stays within `within` of the channel's centreline and within 15° of it. */
+function runsAlong(
+  draft: Draft,
+  c: number,
+  s1: number,
+  s2: number,
+  channel: number,
+  within: number,
+): boolean {
+  const { pieces, near } = draft;
+  const low = Math.max(0, Math.min(s1, s2));
+  const high = Math.min(pieces.centrelineLength[c], Math.max(s1, s2));
+  if (high - low <= draft.slackMm) return false;
+  const at = { x: 0, y: 0 };
+  for (let i = pieceAt(pieces, c, low); i < pieces.firstPiece[c + 1] && pieces.start[i] < high; i++) {
+    const a = Math.max(low, pieces.start[i]);
+    const b = Math.min(high, pieces.start[i] + pieces.length[i]);
+    if (b - a <= draft.slackMm) continue;
+    for (const s of [a, (a + b) / 2, b]) {
+      pointAt(draft, c, s, at);
+      let best = Number.POSITIVE_INFINITY;
+      let sine = 1;
+      for (let k = near.firstPair[i]; k < near.firstPair[i + 1]; k++) {
+        const pair = near.pairOf[k];
+        const j = near.pairA[pair] === i ? near.pairB[pair] : near.pairA[pair];
+        if (pieces.channel[j] !== channel || pieces.centreline[j] === c) continue;
+        const distance = distanceToSegment(
+          at.x,
+          at.y,
+          pieces.x1[j],
+          pieces.y1[j],
+          pieces.x2[j],
+          pieces.y2[j],
+        );
+        if (distance >= best) continue;
+        best = distance;
+        sine = Math.abs(sineBetween(draft, i, j));
+      }
+      if (best > within + draft.slackMm || sine > Math.sin(ALONG_RAD) * (1 + 1e-9)) return false;
+    }
+  }
+  return true;
+}
+
+function sineBetween(draft: Draft, i: number, j: number): number {
+  const { pieces: p } = draft;
+  const cross = (p.x2[i] - p.x1[i]) * (p.y2[j] - p.y1[j]) - (p.y2[i] - p.y1[i]) * (p.x2[j] - p.x1[j]);
+  return cross / (p.length[i] * p.length[j]);
+}

@@ -1,0 +1,299 @@
+import { pieceAt } from '../geometry/pieces.ts';
+import { type Draft, pointAt } from './draft.ts';
+import type { Kept } from './overshoot.ts';
+import type { Stops } from './stops.ts';
+import { countedLength, type Trims } from './trimming.ts';
+
+/** Shorter than this there is no reach: its nodes are one. Far above rounding, far below anything drawn. */
+const NO_LENGTH_MM = 1e-9;
+
+/** Two straight pieces that turn by less than this are one segment. */
+const COLLINEAR_SINE = 1e-9;
+
+/** Stretches of centreline between neighbouring nodes outside wells: columns, by centreline and position. */
+export interface Arcs {
+  readonly count: number;
+  readonly centreline: number[];
+  readonly from: number[];
+  readonly to: number[];
+  /** Roots in draft.nodes, at the from and the to position. */
+  readonly nodeFrom: number[];
+  readonly nodeTo: number[];
+}
+
+/** Cuts each kept centreline at its stops. Makes the nodes of dead ends. A stretch without length joins its nodes. */
+export function toArcs(draft: Draft, stops: Stops, kept: Kept): Arcs {
+  const { pieces, nodes } = draft;
+  const arcs = { count: 0, centreline: [], from: [], to: [], nodeFrom: [], nodeTo: [] } as {
+    count: number;
+    centreline: number[];
+    from: number[];
+    to: number[];
+    nodeFrom: number[];
+    nodeTo: number[];
+  };
+  const add = (c: number, from: number, to: number, nodeFrom: number, nodeTo: number): void => {
+    if (to - from <= NO_LENGTH_MM) {
+      nodes.unite(nodeFrom, nodeTo);
+      return;
+    }
+    arcs.centreline.push(c);
+    arcs.from.push(from);
+    arcs.to.push(to);
+    arcs.nodeFrom.push(nodeFrom);
+    arcs.nodeTo.push(nodeTo);
+    arcs.count++;
+  };
+  for (let c = 0; c < pieces.centrelineCount; c++) {
+    const start = kept.from[c];
+    const end = kept.to[c];
+    let position = start;
+    let node = -1;
+    for (let k = stops.firstStop[c]; k < stops.firstStop[c + 1]; k++) {
+      if (stops.to[k] < start - NO_LENGTH_MM || stops.from[k] > end + NO_LENGTH_MM) continue;
+      if (node < 0) {
+        // The middle of places joined at the end itself may lie half a slack inside it.
+        if (stops.from[k] - start <= draft.slackMm) {
+          node = stops.node[k];
+          position = stops.to[k];
+          continue;
+        }
+        node = nodes.add();
+      }
+      add(c, position, stops.from[k], node, stops.node[k]);
+      node = stops.node[k];
+      position = stops.to[k];
+    }
+    if (node < 0) node = nodes.add();
+    if (pieces.centrelineClosed[c] === 1) {
+      // The first point is a node of its own until rule 7 joins what meets there.
+      const first = firstNodeOf(arcs, c);
+      add(c, position, end, node, first ?? node);
+    } else if (end - position > draft.slackMm) add(c, position, end, node, nodes.add());
+  }
+  for (let a = 0; a < arcs.count; a++) {
+    arcs.nodeFrom[a] = nodes.find(arcs.nodeFrom[a]);
+    arcs.nodeTo[a] = nodes.find(arcs.nodeTo[a]);
+  }
+  return arcs;
+}
+
+function firstNodeOf(
+  arcs: { centreline: number[]; nodeFrom: number[]; count: number },
+  c: number,
+): number | null {
+  for (let a = arcs.count - 1, first: number | null = null; ; a--) {
+    if (a < 0 || arcs.centreline[a] !== c) return first;
+    first = arcs.nodeFrom[a];
+  }
+}
+
+/** Reaches as chains of arcs, and their segments, as columns. */
+export interface Reaches {
+  readonly count: number;
+  readonly channel: Int32Array;
+  /** Roots in draft.nodes. */
+  readonly from: Int32Array;
+  readonly to: Int32Array;
+  readonly drawnMm: Float64Array;
+  readonly ductMm: Float64Array;
+  readonly firstSegment: Int32Array;
+  /** Reach of each arc. */
+  readonly arcReach: Int32Array;
+  /** 1 where the reach runs against the drawn direction of the arc's centreline. */
+  readonly arcReversed: Uint8Array;
+  readonly segments: SegmentColumns;
+}
+
+export class SegmentColumns {
+  readonly reach: number[] = [];
+  readonly x1: number[] = [];
+  readonly y1: number[] = [];
+  readonly x2: number[] = [];
+  readonly y2: number[] = [];
+  readonly ductMm: number[] = [];
+  readonly bendRadius: number[] = [];
+
+  get count(): number {
+    return this.reach.length;
+  }
+}
+
+/** Rule 7: arcs of one channel that meet in a node of degree two are one reach, in drawn direction. */
+export function toReaches(draft: Draft, arcs: Arcs, trims: Trims): Reaches {
+  const through = throughNodes(draft, arcs);
+  const channel: number[] = [];
+  const from: number[] = [];
+  const to: number[] = [];
+  const drawnMm: number[] = [];
+  const ductMm: number[] = [];
+  const firstSegment: number[] = [0];
+  const arcReach = new Int32Array(arcs.count).fill(-1);
+  const arcReversed = new Uint8Array(arcs.count);
+  const segments = new SegmentColumns();
+  for (let a = 0; a < arcs.count; a++) {
+    if (arcReach[a] >= 0) continue;
+    const chain = chainOf(through, a);
+    const reach = channel.length;
+    let drawn = 0;
+    let duct = 0;
+    for (const side of chain) {
+      const arc = side >> 1;
+      arcReach[arc] = reach;
+      arcReversed[arc] = side & 1;
+      drawn += arcs.to[arc] - arcs.from[arc];
+      duct += addSegments(draft, arcs, trims, segments, arc, (side & 1) === 1, reach, firstSegment[reach]);
+    }
+    const head = chain[0];
+    const tail = chain[chain.length - 1];
+    channel.push(draft.pieces.centrelineChannel[arcs.centreline[a]]);
+    from.push((head & 1) === 0 ? arcs.nodeFrom[head >> 1] : arcs.nodeTo[head >> 1]);
+    to.push((tail & 1) === 0 ? arcs.nodeTo[tail >> 1] : arcs.nodeFrom[tail >> 1]);
+    drawnMm.push(drawn);
+    ductMm.push(duct);
+    firstSegment.push(segments.count);
+  }
+  return {
+    count: channel.length,
+    channel: Int32Array.from(channel),
+    from: Int32Array.from(from),
+    to: Int32Array.from(to),
+    drawnMm: Float64Array.from(drawnMm),
+    ductMm: Float64Array.from(ductMm),
+    firstSegment: Int32Array.from(firstSegment),
+    arcReach,
+    arcReversed,
+    segments,
+  };
+}
+
+/**
+ * For each arc side (2a at its from node, 2a + 1 at its to node) the other arc side that it goes on in, where exactly two
+ * sides of one channel meet in a node that is no port; −1 elsewhere.
+ */
+function throughNodes(draft: Draft, arcs: Arcs): Int32Array {
+  const size = draft.nodes.size;
+  const degree = new Int32Array(size);
+  const one = new Int32Array(size).fill(-1);
+  const two = new Int32Array(size).fill(-1);
+  for (let a = 0; a < arcs.count; a++) {
+    for (let side = 0; side < 2; side++) {
+      const node = side === 0 ? arcs.nodeFrom[a] : arcs.nodeTo[a];
+      degree[node]++;
+      if (one[node] < 0) one[node] = 2 * a + side;
+      else two[node] = 2 * a + side;
+    }
+  }
+  const next = new Int32Array(2 * arcs.count).fill(-1);
+  const channelOf = (side: number): number => draft.pieces.centrelineChannel[arcs.centreline[side >> 1]];
+  for (let node = draft.portCount; node < size; node++) {
+    if (degree[node] !== 2 || channelOf(one[node]) !== channelOf(two[node])) continue;
+    next[one[node]] = two[node];
+    next[two[node]] = one[node];
+  }
+  return next;
+}
+
+/** The whole chain that arc a belongs to, as 2·arc + (1 when walked against its drawn direction), in a's direction. */
+function chainOf(next: Int32Array, a: number): number[] {
+  const forward = [2 * a];
+  // Leaving an arc walked forward is its side 1; the side that we come in by says how the next arc is walked.
+  for (let side = next[2 * a + 1]; side >= 0; ) {
+    const arc = side >> 1;
+    if (arc === a) return forward;
+    const reversed = side & 1;
+    forward.push(2 * arc + reversed);
+    side = next[2 * arc + (reversed === 1 ? 0 : 1)];
+  }
+  const backward: number[] = [];
+  for (let side = next[2 * a]; side >= 0; ) {
+    const arc = side >> 1;
+    // We come in by the arc's end: in a's direction it is walked forward when we come in by its side 1.
+    const reversed = (side & 1) === 1 ? 0 : 1;
+    backward.push(2 * arc + reversed);
+    side = next[2 * arc + (reversed === 1 ? 1 : 0)];
+  }
+  return backward.reverse().concat(forward);
+}
+
+/** Adds the straight pieces of one arc to the reach's segments; returns the length that counts. */
+function addSegments(
+  draft: Draft,
+  arcs: Arcs,
+  trims: Trims,
+  segments: SegmentColumns,
+  arc: number,
+  reversed: boolean,
+  reach: number,
+  firstSegment: number,
+): number {
+  const { pieces } = draft;
+  const c = arcs.centreline[arc];
+  const length = pieces.centrelineLength[c];
+  const cuts = [arcs.from[arc]];
+  const radii: number[] = [];
+  const end = arcs.to[arc];
+  if (cuts[0] < 0) addCut(Math.min(0, end), 0);
+  if (end > 0 && cuts[cuts.length - 1] < length) {
+    for (let i = pieceAt(pieces, c, cuts[cuts.length - 1]); i < pieces.firstPiece[c + 1]; i++) {
+      addCut(
+        Math.min(end, i === pieces.firstPiece[c + 1] - 1 ? length : pieces.start[i + 1]),
+        pieces.bendRadius[i],
+      );
+      if (cuts[cuts.length - 1] >= end) break;
+    }
+  }
+  if (cuts[cuts.length - 1] < end) addCut(end, 0);
+
+  const from = { x: 0, y: 0 };
+  const to = { x: 0, y: 0 };
+  let duct = 0;
+  const n = radii.length;
+  for (let k = 0; k < n; k++) {
+    const i = reversed ? n - 1 - k : k;
+    const counted = countedLength(trims, c, cuts[i], cuts[i + 1]);
+    duct += counted;
+    pointAt(draft, c, reversed ? cuts[i + 1] : cuts[i], from);
+    pointAt(draft, c, reversed ? cuts[i] : cuts[i + 1], to);
+    addSegment(segments, reach, firstSegment, from, to, counted, radii[i]);
+  }
+  return duct;
+
+  function addCut(position: number, radius: number): void {
+    if (position - cuts[cuts.length - 1] <= 0) return;
+    cuts.push(position);
+    radii.push(radius);
+  }
+}
+
+function addSegment(
+  segments: SegmentColumns,
+  reach: number,
+  firstSegment: number,
+  from: { readonly x: number; readonly y: number },
+  to: { readonly x: number; readonly y: number },
+  ductMm: number,
+  bendRadius: number,
+): void {
+  const last = segments.count - 1;
+  if (last >= firstSegment && bendRadius === 0 && segments.bendRadius[last] === 0) {
+    const ux = segments.x2[last] - segments.x1[last];
+    const uy = segments.y2[last] - segments.y1[last];
+    const vx = to.x - from.x;
+    const vy = to.y - from.y;
+    const product = Math.hypot(ux, uy) * Math.hypot(vx, vy);
+    if (Math.abs(ux * vy - uy * vx) <= COLLINEAR_SINE * product && ux * vx + uy * vy > 0) {
+      segments.x2[last] = to.x;
+      segments.y2[last] = to.y;
+      segments.ductMm[last] += ductMm;
+      return;
+    }
+  }
+  segments.reach.push(reach);
+  segments.x1.push(from.x);
+  segments.y1.push(from.y);
+  segments.x2.push(to.x);
+  segments.y2.push(to.y);
+  segments.ductMm.push(ductMm);
+  segments.bendRadius.push(bendRadius);
+}

@@ -1,0 +1,127 @@
+import type { Draft } from './draft.ts';
+
+/**
+ * The nodes along each centreline, in order: places less than the slack apart are one node.
+ * A stop at a meeting is a point (from = to, the middle of what was joined, so that no length is gained or lost); a stop
+ * at a port is the stretch of open well, to the exact rim.
+ */
+export interface Stops {
+  readonly count: number;
+  /** Stops of centreline c are firstStop[c] … firstStop[c + 1] − 1, by position. */
+  readonly firstStop: Int32Array;
+  readonly centreline: Int32Array;
+  readonly from: Float64Array;
+  readonly to: Float64Array;
+  /** Any node of the stop's set: ask draft.nodes.find. */
+  readonly node: Int32Array;
+  readonly isWell: Uint8Array;
+}
+
+/** Sorts the marks of each centreline and unites the nodes of those that lie within slack of each other. */
+export function toStops(draft: Draft): Stops {
+  const { marks, pieces, nodes, slackMm } = draft;
+  const n = marks.node.length;
+  const first = new Int32Array(pieces.centrelineCount + 1);
+  for (let m = 0; m < n; m++) first[marks.centreline[m] + 1]++;
+  for (let c = 0; c < pieces.centrelineCount; c++) first[c + 1] += first[c];
+  const order = new Int32Array(n);
+  const fill = first.slice();
+  for (let m = 0; m < n; m++) order[fill[marks.centreline[m]]++] = m;
+
+  const firstStop = new Int32Array(pieces.centrelineCount + 1);
+  const centreline = new Int32Array(n);
+  const from = new Float64Array(n);
+  const to = new Float64Array(n);
+  const node = new Int32Array(n);
+  const isWell = new Uint8Array(n);
+  let count = 0;
+  for (let c = 0; c < pieces.centrelineCount; c++) {
+    firstStop[c] = count;
+    const own = order.subarray(first[c], first[c + 1]);
+    if (own.length > 1)
+      own.sort((a, b) => marks.from[a] - marks.from[b] || marks.to[a] - marks.to[b] || a - b);
+    for (let k = 0; k < own.length; ) {
+      let low = marks.from[own[k]];
+      let high = marks.to[own[k]];
+      let wellLow = Number.POSITIVE_INFINITY;
+      let wellHigh = Number.NEGATIVE_INFINITY;
+      const head = marks.node[own[k]];
+      let next = k;
+      while (next < own.length && marks.from[own[next]] <= high + slackMm) {
+        const m = own[next];
+        nodes.unite(head, marks.node[m]);
+        if (marks.port[m] >= 0) {
+          wellLow = Math.min(wellLow, marks.from[m]);
+          wellHigh = Math.max(wellHigh, marks.to[m]);
+        }
+        high = Math.max(high, marks.to[m]);
+        low = Math.min(low, marks.from[m]);
+        next++;
+      }
+      const well = wellHigh >= wellLow;
+      centreline[count] = c;
+      from[count] = well ? wellLow : (low + high) / 2;
+      to[count] = well ? wellHigh : (low + high) / 2;
+      node[count] = head;
+      isWell[count] = well ? 1 : 0;
+      count++;
+      k = next;
+    }
+  }
+  firstStop[pieces.centrelineCount] = count;
+  uniteRoundStart(draft, firstStop, from, to, node);
+  return {
+    count,
+    firstStop,
+    centreline: centreline.subarray(0, count),
+    from: from.subarray(0, count),
+    to: to.subarray(0, count),
+    node: node.subarray(0, count),
+    isWell: isWell.subarray(0, count),
+  };
+}
+
+/** On a closed centreline the last stop and the first may be one place. */
+function uniteRoundStart(
+  draft: Draft,
+  firstStop: Int32Array,
+  from: Float64Array,
+  to: Float64Array,
+  node: Int32Array,
+): void {
+  const { pieces, nodes, slackMm } = draft;
+  for (let c = 0; c < pieces.centrelineCount; c++) {
+    if (pieces.centrelineClosed[c] === 0 || firstStop[c + 1] - firstStop[c] < 2) continue;
+    const a = firstStop[c];
+    const b = firstStop[c + 1] - 1;
+    if (from[a] + pieces.centrelineLength[c] - to[b] <= slackMm) nodes.unite(node[a], node[b]);
+  }
+}
+
+/** For each node, the stops that belong to it. */
+export interface NodeStops {
+  readonly first: Int32Array;
+  readonly stop: Int32Array;
+}
+
+/** Lists the stops of every node (by root), leaving out those beyond the kept range of their centreline. */
+export function stopsByNode(
+  draft: Draft,
+  stops: Stops,
+  keptFrom: Float64Array,
+  keptTo: Float64Array,
+): NodeStops {
+  const size = draft.nodes.size;
+  const first = new Int32Array(size + 1);
+  const root = new Int32Array(stops.count);
+  for (let k = 0; k < stops.count; k++) {
+    const c = stops.centreline[k];
+    root[k] = stops.to[k] < keptFrom[c] || stops.from[k] > keptTo[c] ? -1 : draft.nodes.find(stops.node[k]);
+    if (root[k] >= 0) first[root[k] + 1]++;
+  }
+  for (let i = 0; i < size; i++) first[i + 1] += first[i];
+  const fill = first.slice();
+  const stop = new Int32Array(first[size]);
+  for (let k = 0; k < stops.count; k++) if (root[k] >= 0) stop[fill[root[k]]++] = k;
+  return { first, stop };
+}

@@ -1,0 +1,129 @@
+import { pieceAt } from '../geometry/pieces.ts';
+import { addStripStretches, coveredUpTo, type StripEnds } from '../geometry/strip.ts';
+import type { Draft } from './draft.ts';
+
+/** Says whether a piece belongs to the strip that is asked about. */
+export type StripTest = (piece: number) => boolean;
+
+/** The strip of one centreline's channel. */
+export function stripOf(draft: Draft, centreline: number): StripTest {
+  const channel = draft.pieces.centrelineChannel[centreline];
+  return (piece) => draft.pieces.channel[piece] === channel;
+}
+
+/**
+ * How far a centreline, walked from position `from` in the given direction, stays inside a strip without leaving it
+ * (mm; 0 when it leaves at once). Walks piece by piece and looks only at the pieces near each.
+ */
+export function reachInStrip(
+  draft: Draft,
+  centreline: number,
+  from: number,
+  direction: 1 | -1,
+  isOfStrip: StripTest,
+  ends: StripEnds | null,
+): number {
+  const { pieces } = draft;
+  const length = pieces.centrelineLength[centreline];
+  let walked = 0;
+
+  // On a carried-on piece first, if the walk starts there.
+  const startEnd = from < 0 ? 2 * centreline : from > length ? 2 * centreline + 1 : -1;
+  let position = from;
+  if (startEnd >= 0) {
+    const inward = startEnd % 2 === 0 ? 1 : -1;
+    if (direction !== inward) return 0;
+    const span = startEnd % 2 === 0 ? -from : from - length;
+    const inside = coverage(
+      draft,
+      piecesNearExtension(draft, startEnd),
+      draft.ends.tipX[startEnd],
+      draft.ends.tipY[startEnd],
+      draft.ends.x[startEnd],
+      draft.ends.y[startEnd],
+      draft.ends.extension[startEnd] - span,
+      isOfStrip,
+      ends,
+    );
+    walked = inside;
+    if (inside < span - 1e-9) return inside;
+    position = startEnd % 2 === 0 ? 0 : length;
+  }
+
+  const first = pieces.firstPiece[centreline];
+  const last = pieces.firstPiece[centreline + 1] - 1;
+  const closed = pieces.centrelineClosed[centreline] === 1;
+  let piece = pieceAt(pieces, centreline, position);
+  if (direction === -1 && piece > first && position === pieces.start[piece]) piece--;
+  for (let count = last - first + 2; count > 0; count--) {
+    const forward = direction === 1;
+    const offset = forward
+      ? position - pieces.start[piece]
+      : pieces.start[piece] + pieces.length[piece] - position;
+    const inside = coverage(
+      draft,
+      piecesNear(draft, piece),
+      forward ? pieces.x1[piece] : pieces.x2[piece],
+      forward ? pieces.y1[piece] : pieces.y2[piece],
+      forward ? pieces.x2[piece] : pieces.x1[piece],
+      forward ? pieces.y2[piece] : pieces.y1[piece],
+      offset,
+      isOfStrip,
+      ends,
+    );
+    walked += inside;
+    if (inside < pieces.length[piece] - offset - 1e-9) return walked;
+    if (forward ? piece === last : piece === first) {
+      if (!closed) return walked;
+      piece = forward ? first : last;
+    } else piece += direction;
+    position = forward ? pieces.start[piece] : pieces.start[piece] + pieces.length[piece];
+  }
+  return walked;
+}
+
+/** Length from `offset` on along a→b that the strip's pieces cover without a gap. */
+function coverage(
+  draft: Draft,
+  near: readonly number[],
+  ax: number,
+  ay: number,
+  bx: number,
+  by: number,
+  offset: number,
+  isOfStrip: StripTest,
+  ends: StripEnds | null,
+): number {
+  const stretches: number[] = [];
+  for (const piece of near) {
+    if (isOfStrip(piece)) {
+      addStripStretches(stretches, draft.pieces, piece, ax, ay, bx, by, draft.slackMm, ends);
+    }
+  }
+  return Math.max(0, coveredUpTo(stretches, offset, draft.slackMm) - offset);
+}
+
+function piecesNear(draft: Draft, piece: number): number[] {
+  const { near } = draft;
+  const found = [];
+  for (let k = near.firstPair[piece]; k < near.firstPair[piece + 1]; k++) {
+    const pair = near.pairOf[k];
+    found.push(near.pairA[pair] === piece ? near.pairB[pair] : near.pairA[pair]);
+  }
+  return found;
+}
+
+function piecesNearExtension(draft: Draft, end: number): number[] {
+  const { near, ends } = draft;
+  return (
+    near.index?.search(
+      Math.min(ends.x[end], ends.tipX[end]),
+      Math.min(ends.y[end], ends.tipY[end]),
+      Math.max(ends.x[end], ends.tipX[end]),
+      Math.max(ends.y[end], ends.tipY[end]),
+      (i) =>
+        draft.pieces.plane[i] ===
+        draft.chip.channels[draft.pieces.channel[draft.pieces.firstPiece[end >> 1]]].plane,
+    ) ?? []
+  );
+}

@@ -1,0 +1,237 @@
+import { pieceAt } from '../geometry/pieces.ts';
+import type { StripEnds } from '../geometry/strip.ts';
+import type { Draft } from './draft.ts';
+import type { Kept } from './overshoot.ts';
+import { type NodeStops, type Stops, stopsByNode } from './stops.ts';
+import { reachInStrip } from './strips.ts';
+
+/** Stretches of centreline that count only in part: columns, sorted by centreline and position; stretches may overlap. */
+export interface Trims {
+  /** Trims of centreline c are first[c] … first[c + 1] − 1. */
+  readonly first: Int32Array;
+  readonly from: Float64Array;
+  readonly to: Float64Array;
+  /** min(1, w/W) · min(1, h/H)³ of the strip that the stretch lies in. */
+  readonly factor: Float64Array;
+}
+
+/**
+ * Rule 5: at a node, the piece of a channel (w, h) from the node to where its centreline first leaves the strip of
+ * another channel that meets there (W, H) counts only as p · min(1, w/W) · min(1, h/H)³. Strips of equal width and depth
+ * that meet end to end are one strip.
+ *
+ * Only strips near the piece at the node are asked, so a node where many channels meet costs no more than their pairs.
+ */
+export function findTrims(
+  draft: Draft,
+  stops: Stops,
+  kept: Kept,
+): { readonly trims: Trims; readonly strips: StripEnds } {
+  const { pieces, near } = draft;
+  const byNode = stopsByNode(draft, stops, kept.from, kept.to);
+  const strips = uniteEqualStrips(draft, stops, kept, byNode);
+  const found: { c: number; from: number; to: number; factor: number }[] = [];
+  const memberStamp = new Int32Array(pieces.centrelineCount).fill(-1);
+  const triedStamp = new Int32Array(pieces.centrelineCount).fill(-1);
+  let arm = 0;
+
+  for (let node = 0; node + 1 < byNode.first.length; node++) {
+    const begin = byNode.first[node];
+    const end = byNode.first[node + 1];
+    if (end - begin < 2 || allEqual(draft, stops, byNode, begin, end)) continue;
+    for (let m = begin; m < end; m++) memberStamp[strips.group[stops.centreline[byNode.stop[m]]]] = node;
+    for (let m = begin; m < end; m++) {
+      const stop = byNode.stop[m];
+      const c = stops.centreline[stop];
+      const closed = pieces.centrelineClosed[c] === 1;
+      if (closed || stops.from[stop] > kept.from[c]) trimArm(c, stops.from[stop], -1, node);
+      if (closed || stops.to[stop] < kept.to[c]) trimArm(c, stops.to[stop], 1, node);
+    }
+  }
+  return { trims: toColumns(pieces.centrelineCount, found), strips: strips.ends };
+
+  function trimArm(c: number, position: number, direction: 1 | -1, node: number): void {
+    arm++;
+    const own = strips.group[c];
+    const tryStrip = (group: number): void => {
+      if (group === own || memberStamp[group] !== node || triedStamp[group] === arm) return;
+      triedStamp[group] = arm;
+      const factor = trimFactor(draft, c, group);
+      if (factor >= 1) return;
+      const length = reachInStrip(
+        draft,
+        c,
+        position,
+        direction,
+        (piece) => strips.group[pieces.centreline[piece]] === group,
+        strips.ends,
+      );
+      if (length > 0) addTrim(c, position, direction, length, factor);
+    };
+    const onExtension = position < 0 ? 2 * c : position > pieces.centrelineLength[c] ? 2 * c + 1 : -1;
+    if (onExtension >= 0 && draft.ends.joinedTo[onExtension] >= 0)
+      tryStrip(strips.group[draft.ends.joinedTo[onExtension]]);
+    for (const piece of piecesAt(c, position, direction)) {
+      for (let k = near.firstPair[piece]; k < near.firstPair[piece + 1]; k++) {
+        const pair = near.pairOf[k];
+        const other = near.pairA[pair] === piece ? near.pairB[pair] : near.pairA[pair];
+        tryStrip(strips.group[pieces.centreline[other]]);
+      }
+    }
+  }
+
+  /** The piece that an arm starts on; at a vertex both that meet there, since either may see the strip first. */
+  function piecesAt(c: number, position: number, direction: 1 | -1): number[] {
+    const piece = pieceAt(pieces, c, position);
+    if (direction === -1 && position === pieces.start[piece]) {
+      if (piece > pieces.firstPiece[c]) return [piece - 1];
+      return pieces.centrelineClosed[c] === 1 ? [pieces.firstPiece[c + 1] - 1] : [piece];
+    }
+    const isPastEnd = direction === 1 && position >= pieces.centrelineLength[c];
+    return isPastEnd && pieces.centrelineClosed[c] === 1 ? [pieces.firstPiece[c]] : [piece];
+  }
+
+  function addTrim(c: number, position: number, direction: 1 | -1, length: number, factor: number): void {
+    const from = direction === 1 ? position : position - length;
+    const to = direction === 1 ? position + length : position;
+    const total = pieces.centrelineLength[c];
+    if (pieces.centrelineClosed[c] === 0) {
+      found.push({ c, from, to, factor });
+      return;
+    }
+    found.push({ c, from: Math.max(0, from), to: Math.min(total, to), factor });
+    if (from < 0) found.push({ c, from: from + total, to: total, factor });
+    if (to > total) found.push({ c, from: 0, to: to - total, factor });
+  }
+}
+
+function allEqual(draft: Draft, stops: Stops, byNode: NodeStops, begin: number, end: number): boolean {
+  const first = channelAt(draft, stops, byNode.stop[begin]);
+  for (let m = begin + 1; m < end; m++) {
+    const other = channelAt(draft, stops, byNode.stop[m]);
+    if (other !== first && !isEqualDuct(draft, other, first)) return false;
+  }
+  return true;
+}
+
+function channelAt(draft: Draft, stops: Stops, stop: number): number {
+  return draft.pieces.centrelineChannel[stops.centreline[stop]];
+}
+
+function isEqualDuct(draft: Draft, a: number, b: number): boolean {
+  const one = draft.chip.channels[a];
+  const two = draft.chip.channels[b];
+  return (
+    one.ductWidthMm === two.ductWidthMm &&
+    (one.depthMm === two.depthMm || (Number.isNaN(one.depthMm) && Number.isNaN(two.depthMm)))
+  );
+}
+
+/** min(1, w/W) · min(1, h/H)³; a depth that is not known counts as equal. */
+function trimFactor(draft: Draft, c: number, group: number): number {
+  const own = draft.chip.channels[draft.pieces.centrelineChannel[c]];
+  const other = draft.chip.channels[draft.pieces.centrelineChannel[group]];
+  const width = Math.min(1, own.ductWidthMm / other.ductWidthMm);
+  const depth = Math.min(1, own.depthMm / other.depthMm);
+  const factor = (Number.isNaN(width) ? 1 : width) * (Number.isNaN(depth) ? 1 : depth ** 3);
+  return factor;
+}
+
+interface UnitedStrips {
+  /** A centreline that stands for all centrelines of one strip. */
+  readonly group: Int32Array;
+  readonly ends: StripEnds;
+}
+
+/** Strips of equal width and depth that meet end to end are one strip, and the seam between them is an inner vertex. */
+function uniteEqualStrips(draft: Draft, stops: Stops, kept: Kept, byNode: NodeStops): UnitedStrips {
+  const { pieces } = draft;
+  const group = new Int32Array(pieces.centrelineCount);
+  // All centrelines of one channel are one strip.
+  for (let c = 0; c < pieces.centrelineCount; c++) {
+    group[c] = c > 0 && pieces.centrelineChannel[c] === pieces.centrelineChannel[c - 1] ? group[c - 1] : c;
+  }
+  const seam = new Uint8Array(2 * pieces.centrelineCount);
+  const find = (c: number): number => {
+    while (group[c] !== c) {
+      group[c] = group[group[c]];
+      c = group[c];
+    }
+    return c;
+  };
+  for (let node = draft.portCount; node + 1 < byNode.first.length; node++) {
+    const begin = byNode.first[node];
+    const end = byNode.first[node + 1];
+    if (end - begin < 2) continue;
+    const heads = new Map<string, number>();
+    for (let m = begin; m < end; m++) {
+      const e = endAtStop(draft, stops, kept, byNode.stop[m]);
+      if (e < 0) continue;
+      const channel = draft.chip.channels[pieces.centrelineChannel[e >> 1]];
+      const key = `${channel.ductWidthMm} ${channel.depthMm} ${channel.plane}`;
+      const head = heads.get(key);
+      if (head === undefined) {
+        heads.set(key, e);
+        continue;
+      }
+      seam[head] = 1;
+      seam[e] = 1;
+      const a = find(head >> 1);
+      const b = find(e >> 1);
+      if (a < b) group[b] = a;
+      else group[a] = b;
+    }
+  }
+  for (let c = 0; c < pieces.centrelineCount; c++) group[c] = find(c);
+  return { group, ends: { seam } };
+}
+
+/** The end of its centreline that a stop stands at, −1 for an inner stop. */
+function endAtStop(draft: Draft, stops: Stops, kept: Kept, stop: number): number {
+  const c = stops.centreline[stop];
+  if (draft.pieces.centrelineClosed[c] === 1) return -1;
+  if (stops.from[stop] - kept.from[c] <= draft.slackMm) return 2 * c;
+  if (kept.to[c] - stops.to[stop] <= draft.slackMm) return 2 * c + 1;
+  return -1;
+}
+
+function toColumns(
+  centrelines: number,
+  found: { c: number; from: number; to: number; factor: number }[],
+): Trims {
+  found.sort((a, b) => a.c - b.c || a.from - b.from || a.to - b.to);
+  const first = new Int32Array(centrelines + 1);
+  for (const trim of found) first[trim.c + 1]++;
+  for (let c = 0; c < centrelines; c++) first[c + 1] += first[c];
+  return {
+    first,
+    from: Float64Array.from(found, (trim) => trim.from),
+    to: Float64Array.from(found, (trim) => trim.to),
+    factor: Float64Array.from(found, (trim) => trim.factor),
+  };
+}
+
+/** Length that counts of the stretch a…b of a centreline: every bit once, with the smallest factor that applies to it. */
+export function countedLength(trims: Trims, c: number, a: number, b: number): number {
+  const begin = trims.first[c];
+  const end = trims.first[c + 1];
+  if (begin === end) return b - a;
+  const edges = [a, b];
+  for (let k = begin; k < end && trims.from[k] < b; k++) {
+    if (trims.to[k] <= a) continue;
+    if (trims.from[k] > a) edges.push(trims.from[k]);
+    if (trims.to[k] < b) edges.push(trims.to[k]);
+  }
+  if (edges.length > 2) edges.sort((x, y) => x - y);
+  let length = 0;
+  for (let e = 0; e + 1 < edges.length; e++) {
+    const low = edges[e];
+    const high = edges[e + 1];
+    let factor = 1;
+    for (let k = begin; k < end && trims.from[k] < high; k++) {
+      if (trims.to[k] > low) factor = Math.min(factor, trims.factor[k]);
+    }
+    length += (high - low) * factor;
+  }
+  return length;
+}

@@ -1,0 +1,141 @@
+import type { Port } from '../chip/types.ts';
+import { endsAtVertex, startsAtVertex } from '../geometry/pieces.ts';
+import { distanceToSegment, nearestParameter } from '../geometry/segment.ts';
+import { type Draft, END_IN_PORT, endPosition } from './draft.ts';
+
+/**
+ * Rule 6: all centreline inside a port's circle is open well. An end inside it joins that port. A centreline that only
+ * touches the rim joins there; a strip that the circle overlaps without reaching its centreline joins at the
+ * centreline's nearest point. A port opens every plane that it touches.
+ *
+ * Cost: one index query per port and the pieces it returns.
+ */
+export function markWells(draft: Draft): void {
+  draft.chip.ports.forEach((port, p) => {
+    markWell(draft, port, p);
+  });
+}
+
+function markWell(draft: Draft, port: Port, p: number): void {
+  const { near, pieces, slackMm } = draft;
+  if (near.index === null) return;
+  const r = port.radiusMm + slackMm;
+  const found = near.index.search(port.xMm - r, port.yMm - r, port.xMm + r, port.yMm + r);
+  /** Channel → nearest piece of a strip that the circle overlaps. */
+  const overlapped = new Map<number, { piece: number; distance: number }>();
+  const reached = new Set<number>();
+  for (const i of found) {
+    const channel = pieces.channel[i];
+    if (markInside(draft, port, p, i)) {
+      reached.add(channel);
+      continue;
+    }
+    const distance = distanceToSegment(
+      port.xMm,
+      port.yMm,
+      pieces.x1[i],
+      pieces.y1[i],
+      pieces.x2[i],
+      pieces.y2[i],
+    );
+    if (distance > port.radiusMm + pieces.half[i] + slackMm) continue;
+    const known = overlapped.get(channel);
+    if ((known === undefined || distance < known.distance) && circleTouchesStrip(draft, port, i)) {
+      overlapped.set(channel, { piece: i, distance });
+    }
+  }
+  for (const [channel, { piece }] of overlapped) {
+    if (reached.has(channel)) continue;
+    const t = nearestParameter(
+      port.xMm,
+      port.yMm,
+      pieces.x1[piece],
+      pieces.y1[piece],
+      pieces.x2[piece],
+      pieces.y2[piece],
+    );
+    const s = pieces.start[piece] + t * pieces.length[piece];
+    draft.marks.addWell(pieces.centreline[piece], s, s, p);
+    markEndReached(draft, pieces.centreline[piece], s, s);
+  }
+}
+
+/** Marks the stretch of one piece inside the circle (or touching it within slack); false when there is none. */
+function markInside(draft: Draft, port: Port, p: number, i: number): boolean {
+  const { pieces, slackMm, ends } = draft;
+  const c = pieces.centreline[i];
+  const ux = (pieces.x2[i] - pieces.x1[i]) / pieces.length[i];
+  const uy = (pieces.y2[i] - pieces.y1[i]) / pieces.length[i];
+  const wx = port.xMm - pieces.x1[i];
+  const wy = port.yMm - pieces.y1[i];
+  const along = wx * ux + wy * uy;
+  const across = wy * ux - wx * uy;
+  const halfChordSquared = (port.radiusMm - across) * (port.radiusMm + across);
+  if (halfChordSquared > 0) {
+    const halfChord = Math.sqrt(halfChordSquared);
+    const from = Math.max(0, along - halfChord);
+    const to = Math.min(pieces.length[i], along + halfChord);
+    if (from <= to) {
+      draft.marks.addWell(c, pieces.start[i] + from, pieces.start[i] + to, p);
+      markEndReached(draft, c, pieces.start[i] + from, pieces.start[i] + to);
+      return true;
+    }
+  }
+  const t = Math.min(pieces.length[i], Math.max(0, along));
+  const px = pieces.x1[i] + t * ux - port.xMm;
+  const py = pieces.y1[i] + t * uy - port.yMm;
+  const gap = Math.hypot(px, py) - port.radiusMm;
+  if (gap > slackMm) return false;
+  const s = pieces.start[i] + t;
+  const end =
+    pieces.centrelineClosed[c] === 1
+      ? -1
+      : s === 0
+        ? 2 * c
+        : t === pieces.length[i] && isLast(draft, i)
+          ? 2 * c + 1
+          : -1;
+  if (end >= 0 && ends.state[end] !== END_IN_PORT) {
+    // Drawn short of the rim by less than the slack: carried on to the exact rim.
+    ends.state[end] = END_IN_PORT;
+    ends.extension[end] = Math.max(0, gap);
+    const share = port.radiusMm / (port.radiusMm + gap);
+    ends.tipX[end] = port.xMm + px * share;
+    ends.tipY[end] = port.yMm + py * share;
+    const position = endPosition(draft, end);
+    draft.marks.addWell(c, position, position, p);
+  } else {
+    draft.marks.addWell(c, s, s, p);
+  }
+  return true;
+}
+
+function isLast(draft: Draft, i: number): boolean {
+  return i === draft.pieces.firstPiece[draft.pieces.centreline[i] + 1] - 1;
+}
+
+/** An end inside a port's circle joins that port and nothing else. */
+function markEndReached(draft: Draft, c: number, from: number, to: number): void {
+  const { pieces, ends } = draft;
+  if (pieces.centrelineClosed[c] === 1) return;
+  if (from <= 0) ends.state[2 * c] = END_IN_PORT;
+  if (to >= pieces.centrelineLength[c]) ends.state[2 * c + 1] = END_IN_PORT;
+}
+
+/** Whether circle and strip of one piece have a point in common: the strip's nearest point to the centre decides. */
+function circleTouchesStrip(draft: Draft, port: Port, i: number): boolean {
+  const { pieces, slackMm } = draft;
+  const length = pieces.length[i];
+  const ux = (pieces.x2[i] - pieces.x1[i]) / length;
+  const uy = (pieces.y2[i] - pieces.y1[i]) / length;
+  const wx = port.xMm - pieces.x1[i];
+  const wy = port.yMm - pieces.y1[i];
+  const along = Math.min(length, Math.max(0, wx * ux + wy * uy));
+  const across = wy * ux - wx * uy;
+  const clamped = Math.min(pieces.half[i], Math.max(-pieces.half[i], across));
+  const nx = pieces.x1[i] + along * ux - clamped * uy;
+  const ny = pieces.y1[i] + along * uy + clamped * ux;
+  if (Math.hypot(nx - port.xMm, ny - port.yMm) <= port.radiusMm + slackMm) return true;
+  // Outside the corner of an inner vertex the strip is round: the distance to the vertex, already compared, decides.
+  return (along === 0 && startsAtVertex(pieces, i)) || (along === length && endsAtVertex(pieces, i));
+}
