@@ -2,9 +2,12 @@ import type { Chip } from '../chip/types.ts';
 import { findNearPairs } from '../geometry/near.ts';
 import { toPieces } from '../geometry/pieces.ts';
 import { type Draft, END_FREE, END_IN_PORT, Marks, NodeUnion, pointAt, toEnds } from './draft.ts';
+import { addDuctJoints, type DuctJoints } from './duct-joints.ts';
 import { joinEnds } from './ends.ts';
+import { JointTally } from './joint-types.ts';
 import { markMeetings } from './meetings.ts';
 import { nameNodes, nameReach, nameSegment } from './names.ts';
+import { classifyNodes, type NodeJoints } from './node-joints.ts';
 import { type Kept, leaveOutEndPieces } from './overshoot.ts';
 import { type Arcs, type Reaches, toArcs, toReaches } from './reaches.ts';
 import { type Stops, stopsByNode, toStops } from './stops.ts';
@@ -44,10 +47,13 @@ export function buildNetwork(chip: Chip): Network {
   joinEnds(draft);
   const stops = toStops(draft);
   const kept = leaveOutEndPieces(draft, stops);
-  const { trims, strips } = findTrims(draft, stops, kept);
   const arcs = toArcs(draft, stops, kept);
+  const tally = new JointTally();
+  const atNodes = classifyNodes(draft, arcs, tally);
+  const { trims, strips } = findTrims(draft, stops, kept, atNodes.trimming);
   const reaches = toReaches(draft, arcs, trims);
-  return toNetwork(draft, stops, kept, arcs, reaches, strips);
+  const joints = toReachJoints(draft, reaches, atNodes, addDuctJoints(chip, reaches, tally));
+  return toNetwork(draft, stops, kept, arcs, reaches, strips, joints, tally);
 }
 
 /** Strips nearer than this are of interest to some rule: the join slack, or the least wall. */
@@ -67,6 +73,8 @@ function toNetwork(
   arcs: Arcs,
   reaches: Reaches,
   strips: Network['trace']['strips'],
+  joints: ReachJoints,
+  tally: JointTally,
 ): Network {
   const { chip, pieces } = draft;
   const index = numberNodes(draft, reaches);
@@ -102,6 +110,7 @@ function toNetwork(
   for (let r = 0; r < reaches.count; r++) reachNumber[r] = ++channelReachCount[reaches.channel[r]];
 
   const { nodeX, nodeY } = placeNodes(draft, arcs, index, nodePort);
+  const ductMm = chip.joints === 'resolved' ? reaches.resolvedMm : reaches.byRuleMm;
   const segments = reaches.segments;
   const names = nameNodes(chip, nodeKind, nodePort);
   const reachColumns = { reachChannel: reaches.channel, reachNumber, channelReachCount };
@@ -119,8 +128,11 @@ function toNetwork(
     reachFrom,
     reachTo,
     reachDrawnMm: reaches.drawnMm,
-    reachDuctMm: reaches.ductMm,
-    reachJointMm: new Float64Array(reaches.count),
+    reachDuctMm: ductMm.map((length, r) => length + joints.jointMm[r]),
+    reachJointMm: joints.jointMm,
+    reachJointBoundMm: joints.boundMm,
+    reachCentrelineMm: reaches.byRuleMm,
+    joints: tally.summaries(),
     firstSegment,
     segmentCount: segments.count,
     segmentReach: Int32Array.from(segments.reach),
@@ -175,6 +187,37 @@ function toNetwork(
       ...toPlaces(stops, byNode, index),
     };
   }
+}
+
+interface ReachJoints {
+  readonly jointMm: Float64Array;
+  readonly boundMm: Float64Array;
+}
+
+/**
+ * What the joints at the nodes and inside the reaches add to each reach. With `joints: centreline` nothing is added, and
+ * what would have been is what the joints could move it by.
+ */
+function toReachJoints(
+  draft: Draft,
+  reaches: Reaches,
+  atNodes: NodeJoints,
+  inDucts: DuctJoints,
+): ReachJoints {
+  const jointMm = inDucts.reachMm;
+  const boundMm = inDucts.reachBoundMm;
+  for (let a = 0; a < reaches.arcReach.length; a++) {
+    const r = reaches.arcReach[a];
+    jointMm[r] += atNodes.sideMm[2 * a] + atNodes.sideMm[2 * a + 1];
+    boundMm[r] += atNodes.sideBoundMm[2 * a] + atNodes.sideBoundMm[2 * a + 1];
+  }
+  if (draft.chip.joints === 'resolved') return { jointMm, boundMm };
+  return {
+    jointMm: new Float64Array(reaches.count),
+    boundMm: boundMm.map(
+      (bound, r) => bound + Math.abs(jointMm[r] + reaches.resolvedMm[r] - reaches.byRuleMm[r]),
+    ),
+  };
 }
 
 interface NodeNumbers {

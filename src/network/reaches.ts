@@ -96,7 +96,9 @@ export interface Reaches {
   readonly from: Int32Array;
   readonly to: Int32Array;
   readonly drawnMm: Float64Array;
-  readonly ductMm: Float64Array;
+  /** Length that counts, without what joints add: by rule 5 alone, and with resolved joints. */
+  readonly byRuleMm: Float64Array;
+  readonly resolvedMm: Float64Array;
   readonly firstSegment: Int32Array;
   /** Reach of each arc. */
   readonly arcReach: Int32Array;
@@ -121,12 +123,15 @@ export class SegmentColumns {
 
 /** Rule 7: arcs of one channel that meet in a node of degree two are one reach, in drawn direction. */
 export function toReaches(draft: Draft, arcs: Arcs, trims: Trims): Reaches {
+  const { factorByRule, factorResolved } = trims;
+  const factors = draft.chip.joints === 'resolved' ? factorResolved : factorByRule;
   const through = throughNodes(draft, arcs);
   const channel: number[] = [];
   const from: number[] = [];
   const to: number[] = [];
   const drawnMm: number[] = [];
-  const ductMm: number[] = [];
+  const byRuleMm: number[] = [];
+  const resolvedMm: number[] = [];
   const firstSegment: number[] = [0];
   const arcReach = new Int32Array(arcs.count).fill(-1);
   const arcReversed = new Uint8Array(arcs.count);
@@ -136,13 +141,16 @@ export function toReaches(draft: Draft, arcs: Arcs, trims: Trims): Reaches {
     const chain = chainOf(through, a);
     const reach = channel.length;
     let drawn = 0;
-    let duct = 0;
+    let byRule = 0;
+    let resolved = 0;
     for (const side of chain) {
       const arc = side >> 1;
       arcReach[arc] = reach;
       arcReversed[arc] = side & 1;
       drawn += arcs.to[arc] - arcs.from[arc];
-      duct += addSegments(draft, arcs, trims, segments, arc, (side & 1) === 1, reach, firstSegment[reach]);
+      byRule += countedLength(trims, factorByRule, arcs.centreline[arc], arcs.from[arc], arcs.to[arc]);
+      resolved += countedLength(trims, factorResolved, arcs.centreline[arc], arcs.from[arc], arcs.to[arc]);
+      addSegments(draft, arcs, trims, factors, segments, arc, (side & 1) === 1, reach, firstSegment[reach]);
     }
     const head = chain[0];
     const tail = chain[chain.length - 1];
@@ -150,7 +158,8 @@ export function toReaches(draft: Draft, arcs: Arcs, trims: Trims): Reaches {
     from.push((head & 1) === 0 ? arcs.nodeFrom[head >> 1] : arcs.nodeTo[head >> 1]);
     to.push((tail & 1) === 0 ? arcs.nodeTo[tail >> 1] : arcs.nodeFrom[tail >> 1]);
     drawnMm.push(drawn);
-    ductMm.push(duct);
+    byRuleMm.push(byRule);
+    resolvedMm.push(resolved);
     firstSegment.push(segments.count);
   }
   return {
@@ -159,7 +168,8 @@ export function toReaches(draft: Draft, arcs: Arcs, trims: Trims): Reaches {
     from: Int32Array.from(from),
     to: Int32Array.from(to),
     drawnMm: Float64Array.from(drawnMm),
-    ductMm: Float64Array.from(ductMm),
+    byRuleMm: Float64Array.from(byRuleMm),
+    resolvedMm: Float64Array.from(resolvedMm),
     firstSegment: Int32Array.from(firstSegment),
     arcReach,
     arcReversed,
@@ -167,29 +177,41 @@ export function toReaches(draft: Draft, arcs: Arcs, trims: Trims): Reaches {
   };
 }
 
+/** For each node root, the arc sides (2a at the arc's from node, 2a + 1 at its to node) that come to it. */
+export function sidesByNode(
+  draft: Draft,
+  arcs: Arcs,
+): { readonly first: Int32Array; readonly side: Int32Array } {
+  const first = new Int32Array(draft.nodes.size + 1);
+  for (let a = 0; a < arcs.count; a++) {
+    first[arcs.nodeFrom[a] + 1]++;
+    first[arcs.nodeTo[a] + 1]++;
+  }
+  for (let i = 0; i < draft.nodes.size; i++) first[i + 1] += first[i];
+  const fill = first.slice();
+  const side = new Int32Array(2 * arcs.count);
+  for (let a = 0; a < arcs.count; a++) {
+    side[fill[arcs.nodeFrom[a]]++] = 2 * a;
+    side[fill[arcs.nodeTo[a]]++] = 2 * a + 1;
+  }
+  return { first, side };
+}
+
 /**
  * For each arc side (2a at its from node, 2a + 1 at its to node) the other arc side that it goes on in, where exactly two
  * sides of one channel meet in a node that is no port; −1 elsewhere.
  */
 function throughNodes(draft: Draft, arcs: Arcs): Int32Array {
-  const size = draft.nodes.size;
-  const degree = new Int32Array(size);
-  const one = new Int32Array(size).fill(-1);
-  const two = new Int32Array(size).fill(-1);
-  for (let a = 0; a < arcs.count; a++) {
-    for (let side = 0; side < 2; side++) {
-      const node = side === 0 ? arcs.nodeFrom[a] : arcs.nodeTo[a];
-      degree[node]++;
-      if (one[node] < 0) one[node] = 2 * a + side;
-      else two[node] = 2 * a + side;
-    }
-  }
+  const sides = sidesByNode(draft, arcs);
   const next = new Int32Array(2 * arcs.count).fill(-1);
   const channelOf = (side: number): number => draft.pieces.centrelineChannel[arcs.centreline[side >> 1]];
-  for (let node = draft.portCount; node < size; node++) {
-    if (degree[node] !== 2 || channelOf(one[node]) !== channelOf(two[node])) continue;
-    next[one[node]] = two[node];
-    next[two[node]] = one[node];
+  for (let node = draft.portCount; node < draft.nodes.size; node++) {
+    if (sides.first[node + 1] - sides.first[node] !== 2) continue;
+    const one = sides.side[sides.first[node]];
+    const two = sides.side[sides.first[node] + 1];
+    if (channelOf(one) !== channelOf(two)) continue;
+    next[one] = two;
+    next[two] = one;
   }
   return next;
 }
@@ -216,17 +238,18 @@ function chainOf(next: Int32Array, a: number): number[] {
   return backward.reverse().concat(forward);
 }
 
-/** Adds the straight pieces of one arc to the reach's segments; returns the length that counts. */
+/** Adds the straight pieces of one arc to the reach's segments, each with the length that counts. */
 function addSegments(
   draft: Draft,
   arcs: Arcs,
   trims: Trims,
+  factors: Float64Array,
   segments: SegmentColumns,
   arc: number,
   reversed: boolean,
   reach: number,
   firstSegment: number,
-): number {
+): void {
   const { pieces } = draft;
   const c = arcs.centreline[arc];
   const length = pieces.centrelineLength[c];
@@ -247,17 +270,14 @@ function addSegments(
 
   const from = { x: 0, y: 0 };
   const to = { x: 0, y: 0 };
-  let duct = 0;
   const n = radii.length;
   for (let k = 0; k < n; k++) {
     const i = reversed ? n - 1 - k : k;
-    const counted = countedLength(trims, c, cuts[i], cuts[i + 1]);
-    duct += counted;
+    const counted = countedLength(trims, factors, c, cuts[i], cuts[i + 1]);
     pointAt(draft, c, reversed ? cuts[i + 1] : cuts[i], from);
     pointAt(draft, c, reversed ? cuts[i] : cuts[i + 1], to);
     addSegment(segments, reach, firstSegment, from, to, counted, radii[i]);
   }
-  return duct;
 
   function addCut(position: number, radius: number): void {
     if (position - cuts[cuts.length - 1] <= 0) return;

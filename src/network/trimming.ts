@@ -1,6 +1,7 @@
 import { pieceAt } from '../geometry/pieces.ts';
 import type { StripEnds } from '../geometry/strip.ts';
 import type { Draft } from './draft.ts';
+import { TRIM_BY_RULE, TRIM_TO_WALL } from './node-joints.ts';
 import type { Kept } from './overshoot.ts';
 import { type NodeStops, type Stops, stopsByNode } from './stops.ts';
 import { reachInStrip } from './strips.ts';
@@ -11,8 +12,10 @@ export interface Trims {
   readonly first: Int32Array;
   readonly from: Float64Array;
   readonly to: Float64Array;
-  /** min(1, w/W) · min(1, h/H)³ of the strip that the stretch lies in. */
-  readonly factor: Float64Array;
+  /** min(1, w/W) · min(1, h/H)³ of the strip that the stretch lies in: rule 5 as written. */
+  readonly factorByRule: Float64Array;
+  /** With resolved joints: the same, but at a computed joint 1, or 0 for a narrow arm whose length runs to the wall (rule 8). */
+  readonly factorResolved: Float64Array;
 }
 
 /**
@@ -26,11 +29,12 @@ export function findTrims(
   draft: Draft,
   stops: Stops,
   kept: Kept,
+  trimming: Uint8Array,
 ): { readonly trims: Trims; readonly strips: StripEnds } {
   const { pieces, near } = draft;
   const byNode = stopsByNode(draft, stops, kept.from, kept.to);
   const strips = uniteEqualStrips(draft, stops, kept, byNode);
-  const found: { c: number; from: number; to: number; factor: number }[] = [];
+  const found: Trim[] = [];
   const memberStamp = new Int32Array(pieces.centrelineCount).fill(-1);
   const triedStamp = new Int32Array(pieces.centrelineCount).fill(-1);
   let arm = 0;
@@ -66,7 +70,7 @@ export function findTrims(
         (piece) => strips.group[pieces.centreline[piece]] === group,
         strips.ends,
       );
-      if (length > 0) addTrim(c, position, direction, length, factor);
+      if (length > 0) addTrim(c, position, direction, length, factor, resolved(node, factor));
     };
     const onExtension = position < 0 ? 2 * c : position > pieces.centrelineLength[c] ? 2 * c + 1 : -1;
     if (onExtension >= 0 && draft.ends.joinedTo[onExtension] >= 0)
@@ -91,17 +95,30 @@ export function findTrims(
     return isPastEnd && pieces.centrelineClosed[c] === 1 ? [pieces.firstPiece[c]] : [piece];
   }
 
-  function addTrim(c: number, position: number, direction: 1 | -1, length: number, factor: number): void {
+  /** The factor with resolved joints. */
+  function resolved(node: number, factor: number): number {
+    if (trimming[node] === TRIM_BY_RULE) return factor;
+    return trimming[node] === TRIM_TO_WALL ? 0 : 1;
+  }
+
+  function addTrim(
+    c: number,
+    position: number,
+    direction: 1 | -1,
+    length: number,
+    factorByRule: number,
+    factorResolved: number,
+  ): void {
     const from = direction === 1 ? position : position - length;
     const to = direction === 1 ? position + length : position;
     const total = pieces.centrelineLength[c];
     if (pieces.centrelineClosed[c] === 0) {
-      found.push({ c, from, to, factor });
+      found.push({ c, from, to, factorByRule, factorResolved });
       return;
     }
-    found.push({ c, from: Math.max(0, from), to: Math.min(total, to), factor });
-    if (from < 0) found.push({ c, from: from + total, to: total, factor });
-    if (to > total) found.push({ c, from: 0, to: to - total, factor });
+    found.push({ c, from: Math.max(0, from), to: Math.min(total, to), factorByRule, factorResolved });
+    if (from < 0) found.push({ c, from: from + total, to: total, factorByRule, factorResolved });
+    if (to > total) found.push({ c, from: 0, to: to - total, factorByRule, factorResolved });
   }
 }
 
@@ -195,10 +212,15 @@ function endAtStop(draft: Draft, stops: Stops, kept: Kept, stop: number): number
   return -1;
 }
 
-function toColumns(
-  centrelines: number,
-  found: { c: number; from: number; to: number; factor: number }[],
-): Trims {
+interface Trim {
+  readonly c: number;
+  readonly from: number;
+  readonly to: number;
+  readonly factorByRule: number;
+  readonly factorResolved: number;
+}
+
+function toColumns(centrelines: number, found: Trim[]): Trims {
   found.sort((a, b) => a.c - b.c || a.from - b.from || a.to - b.to);
   const first = new Int32Array(centrelines + 1);
   for (const trim of found) first[trim.c + 1]++;
@@ -207,12 +229,13 @@ function toColumns(
     first,
     from: Float64Array.from(found, (trim) => trim.from),
     to: Float64Array.from(found, (trim) => trim.to),
-    factor: Float64Array.from(found, (trim) => trim.factor),
+    factorByRule: Float64Array.from(found, (trim) => trim.factorByRule),
+    factorResolved: Float64Array.from(found, (trim) => trim.factorResolved),
   };
 }
 
 /** Length that counts of the stretch a…b of a centreline: every bit once, with the smallest factor that applies to it. */
-export function countedLength(trims: Trims, c: number, a: number, b: number): number {
+export function countedLength(trims: Trims, factors: Float64Array, c: number, a: number, b: number): number {
   const begin = trims.first[c];
   const end = trims.first[c + 1];
   if (begin === end) return b - a;
@@ -229,7 +252,7 @@ export function countedLength(trims: Trims, c: number, a: number, b: number): nu
     const high = edges[e + 1];
     let factor = 1;
     for (let k = begin; k < end && trims.from[k] < high; k++) {
-      if (trims.to[k] > low) factor = Math.min(factor, trims.factor[k]);
+      if (trims.to[k] > low) factor = Math.min(factor, factors[k]);
     }
     length += (high - low) * factor;
   }

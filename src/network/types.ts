@@ -1,6 +1,7 @@
 import type { Chip } from '../chip/types.ts';
 import type { Nearness } from '../geometry/near.ts';
 import type { StripEnds } from '../geometry/strip.ts';
+import type { JointSummary } from './joint-types.ts';
 
 export type NodeKind = 'port' | 'junction' | 'end' | 'step';
 
@@ -32,8 +33,17 @@ export interface Network {
   readonly reachDrawnMm: Float64Array;
   /** Length that resists flow, after the joining rules, mm. */
   readonly reachDuctMm: Float64Array;
-  /** Signed length that resolved joints add, already within reachDuctMm, mm; 0 with `joints: centreline`. */
+  /**
+   * Signed length that resolved joints add, already within reachDuctMm (not within segmentDuctMm), mm; 0 with
+   * `joints: centreline`. Volume and residence time go by reachDuctMm − reachJointMm.
+   */
   readonly reachJointMm: Float64Array;
+  /** Length by which joints that are not resolved, and the interpolation of those that are, could move reachDuctMm, ± mm. */
+  readonly reachJointBoundMm: Float64Array;
+  /** What rule 5 alone counts: the duct length with `joints: centreline`, mm. */
+  readonly reachCentrelineMm: Float64Array;
+  /** What the joints of each kind come to, or with `joints: centreline` would come to. */
+  readonly joints: readonly JointSummary[];
   /** Segments of reach r are firstSegment[r] … firstSegment[r + 1] − 1, in flow direction from → to. Length reachCount + 1. */
   readonly firstSegment: Int32Array;
   /** 1-based count of this reach within its channel, and how many the channel has (for names). */

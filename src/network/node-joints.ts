@@ -1,0 +1,412 @@
+import type { Channel } from '../chip/types.ts';
+import { endsAtVertex, pieceAt } from '../geometry/pieces.ts';
+import { crossK, MITRE_MAX_TURN_RAD, mitreK, stepK, teeEqualK, teeIntoWideK } from '../physics/joints.ts';
+import { type Draft, pointAt } from './draft.ts';
+import type { JointKind, JointTally } from './joint-types.ts';
+import { type Arcs, sidesByNode } from './reaches.ts';
+
+/**
+ * Rule 8, `joints: resolved`, at nodes: which computed case a junction or step is, what it adds to each arm, and what a
+ * case that nobody computed could be off by. Corners and bends inside a reach are duct-joints.ts's.
+ *
+ * Cost: linear in the arms; the walk along an arm ends at the first corner or node.
+ */
+export interface NodeJoints {
+  /** Signed length that the joint at an arc's side (2a at from, 2a + 1 at to) adds to it, mm. */
+  readonly sideMm: Float64Array;
+  /** Length by which that side could still be off, mm. */
+  readonly sideBoundMm: Float64Array;
+  /** By node root: how rule 5 is applied there. */
+  readonly trimming: Uint8Array;
+}
+
+/** Rule 5 as written; no trimming (lengths run to the meeting point); narrow arms run to the wider strip's wall. */
+export const TRIM_BY_RULE = 0;
+export const TRIM_NOTHING = 1;
+export const TRIM_TO_WALL = 2;
+
+/** A T, cross or step within this angle of its computed one is that case. */
+export const ANGLE_TOLERANCE_RAD = (5 * Math.PI) / 180;
+/** Meeting points of two joints nearer than this many widths along the duct are no longer two joints by themselves. */
+export const APART_WIDTHS = 1.98;
+/** A dead end of this many widths behaves as closed. */
+const DEAD_END_WIDTHS = 3;
+/** Two drawn widths or depths that differ by less are equal. */
+const EQUAL = 1e-6;
+/** Estimated bound of an end correction that was not computed, in widths of the narrowest duct: no computed one is off centreline counting by more up to W = 10w. */
+const UNKNOWN_K = 0.5;
+/** Entry of creeping flow from a wide, deep well: half of Sampson's orifice is 0.59 radii of a tube, 0.41 widths of a deep slot. */
+const WELL_K = 0.6;
+
+interface Arm {
+  readonly side: number;
+  readonly channel: Channel;
+  /** Unit vector out of the node. */
+  readonly dx: number;
+  readonly dy: number;
+}
+
+export function classifyNodes(draft: Draft, arcs: Arcs, tally: JointTally): NodeJoints {
+  const sides = sidesByNode(draft, arcs);
+  const joints: NodeJoints = {
+    sideMm: new Float64Array(2 * arcs.count),
+    sideBoundMm: new Float64Array(2 * arcs.count),
+    trimming: new Uint8Array(draft.nodes.size),
+  };
+  const runs = new RunLengths(draft, arcs, sides);
+  for (let node = 0; node + 1 < sides.first.length; node++) {
+    const begin = sides.first[node];
+    const end = sides.first[node + 1];
+    if (begin === end) continue;
+    const arms: Arm[] = [];
+    for (let k = begin; k < end; k++) arms.push(toArm(draft, arcs, sides.side[k]));
+    if (node < draft.portCount) markWell(draft, joints, tally, node, arms);
+    else if (arms.length > 1 && !isThrough(arms)) classify(draft, joints, tally, runs, node, arms);
+  }
+  return joints;
+}
+
+/** Two arms of one channel: an inner point of a reach, where duct-joints.ts looks for a corner. */
+function isThrough(arms: readonly Arm[]): boolean {
+  return arms.length === 2 && arms[0].channel === arms[1].channel;
+}
+
+function toArm(draft: Draft, arcs: Arcs, side: number): Arm {
+  const arc = side >> 1;
+  const c = arcs.centreline[arc];
+  const atFrom = (side & 1) === 0;
+  const here = { x: 0, y: 0 };
+  const there = { x: 0, y: 0 };
+  const position = atFrom ? arcs.from[arc] : arcs.to[arc];
+  pointAt(draft, c, position, here);
+  pointAt(draft, c, nextVertex(draft, arcs, arc, position, atFrom), there);
+  const length = Math.hypot(there.x - here.x, there.y - here.y);
+  return {
+    side,
+    channel: draft.chip.channels[draft.pieces.centrelineChannel[c]],
+    dx: (there.x - here.x) / length,
+    dy: (there.y - here.y) / length,
+  };
+}
+
+/** Position of the first vertex (or end of the arc) beyond a position, walking away from the node. */
+function nextVertex(draft: Draft, arcs: Arcs, arc: number, position: number, forward: boolean): number {
+  const { pieces } = draft;
+  const c = arcs.centreline[arc];
+  const length = pieces.centrelineLength[c];
+  const limit = forward ? arcs.to[arc] : arcs.from[arc];
+  if (forward) {
+    if (position < 0) return Math.min(0, limit);
+    const piece = pieceAt(pieces, c, position);
+    const next = piece + 1 < pieces.firstPiece[c + 1] ? pieces.start[piece + 1] : length;
+    return position >= length || next <= position ? limit : Math.min(next, limit);
+  }
+  if (position > length) return Math.max(length, limit);
+  let piece = pieceAt(pieces, c, position);
+  if (pieces.start[piece] >= position && piece > pieces.firstPiece[c]) piece--;
+  return position <= 0 ? limit : Math.max(pieces.start[piece], limit);
+}
+
+function markWell(
+  draft: Draft,
+  joints: NodeJoints,
+  tally: JointTally,
+  node: number,
+  arms: readonly Arm[],
+): void {
+  const port = draft.chip.ports[node];
+  for (const arm of arms) {
+    const { ductWidthMm: width, depthMm: depth, stripHalfWidthMm: half } = arm.channel;
+    // The rim is round: at the sides of the strip the duct begins a sagitta further out than on its centreline.
+    const sagitta =
+      half < port.radiusMm ? port.radiusMm - Math.sqrt(port.radiusMm ** 2 - half ** 2) : port.radiusMm;
+    const bound = WELL_K * Math.min(width, Number.isNaN(depth) ? width : depth) + sagitta;
+    joints.sideBoundMm[arm.side] = bound;
+    tally.add('entry from a well', 0, bound, port.xMm, port.yMm);
+  }
+}
+
+function classify(
+  draft: Draft,
+  joints: NodeJoints,
+  tally: JointTally,
+  runs: RunLengths,
+  node: number,
+  arms: readonly Arm[],
+): void {
+  if (arms.some(({ channel }) => Number.isNaN(channel.depthMm))) return;
+  const found =
+    arms.length === 2
+      ? twoArms(arms)
+      : arms.length === 3
+        ? threeArms(arms)
+        : arms.length === 4
+          ? fourArms(arms)
+          : null;
+  const at = { x: 0, y: 0 };
+  const first = arms[0].side;
+  pointAt(
+    draft,
+    runs.arcs.centreline[first >> 1],
+    (first & 1) === 0 ? runs.arcs.from[first >> 1] : runs.arcs.to[first >> 1],
+    at,
+  );
+  if (
+    found !== null &&
+    found.parts.every((part) => runs.isLongEnough(part.arm.side, part.apartMm, part.wallMm))
+  ) {
+    let added = 0;
+    let bound = 0;
+    for (const { arm, lengthMm, boundMm } of found.parts) {
+      joints.sideMm[arm.side] += lengthMm;
+      joints.sideBoundMm[arm.side] += boundMm;
+      added += lengthMm;
+      bound = Math.max(bound, boundMm);
+    }
+    joints.trimming[node] = found.trimming;
+    if (found.kind !== null) tally.add(found.kind, added, bound, at.x, at.y);
+    return;
+  }
+  const bound = unknownBound(arms);
+  for (const arm of arms) joints.sideBoundMm[arm.side] += bound;
+  tally.add(unknownKind(arms), 0, bound, at.x, at.y);
+}
+
+function unknownKind(arms: readonly Arm[]): JointKind {
+  if (arms.length !== 2) return 'junction not computed';
+  return isEqualDuct(arms[0].channel, arms[1].channel) ? 'corner not computed' : 'step not computed';
+}
+
+/** Centreline counting is off by at most about half the narrowest width, and by the logarithm of spreading beyond ten widths. */
+function unknownBound(arms: readonly Arm[]): number {
+  const widths = arms.map(({ channel }) => channel.ductWidthMm);
+  const narrow = Math.min(...widths);
+  const ratio = Math.max(...widths) / narrow;
+  return narrow * (UNKNOWN_K + (ratio > 10 ? (1.6 / Math.PI) * Math.log(ratio / 10) : 0));
+}
+
+interface Part {
+  readonly arm: Arm;
+  readonly lengthMm: number;
+  readonly boundMm: number;
+  /** Least distance to the next joint along this arm, mm. */
+  readonly apartMm: number;
+  /** Distance from the node to the wall that the arm's length runs to, mm. */
+  readonly wallMm: number;
+}
+
+interface Computed {
+  /** null: a joint that adds nothing (straight on in an equal duct). */
+  readonly kind: JointKind | null;
+  readonly trimming: number;
+  readonly parts: readonly Part[];
+}
+
+function toPart(arm: Arm, k: number, error: number, widthMm: number, wallMm = 0): Part {
+  const own = arm.channel.ductWidthMm;
+  return {
+    arm,
+    lengthMm: k * widthMm,
+    boundMm: error * widthMm,
+    // From a wall the meeting point of equal ducts would lie half a width further in.
+    apartMm: APART_WIDTHS * own - (wallMm > 0 ? own / 2 : 0),
+    wallMm,
+  };
+}
+
+/** A corner of two strokes of equal ducts, or a collinear step in width. */
+function twoArms(arms: readonly Arm[]): Computed | null {
+  const [one, two] = arms;
+  const turn = Math.PI - angleBetween(one, two);
+  if (isEqualDuct(one.channel, two.channel)) {
+    if (turn > MITRE_MAX_TURN_RAD) return null;
+    const width = one.channel.ductWidthMm;
+    const { k, error } = mitreK(width / one.channel.depthMm, turn);
+    const parts = arms.map((arm) => ({
+      ...toPart(arm, k / 2, error / 2, width),
+      // A vertex on a nearly straight line is no joint that needs room.
+      ...(turn <= ANGLE_TOLERANCE_RAD ? { apartMm: 0 } : {}),
+    }));
+    return { kind: turn <= ANGLE_TOLERANCE_RAD ? null : 'mitred corner', trimming: TRIM_NOTHING, parts };
+  }
+  if (!isEqual(one.channel.depthMm, two.channel.depthMm) || turn > ANGLE_TOLERANCE_RAD) return null;
+  const [narrow, wide] = one.channel.ductWidthMm <= two.channel.ductWidthMm ? [one, two] : [two, one];
+  const width = narrow.channel.ductWidthMm;
+  const { k, error } = stepK(width / narrow.channel.depthMm, wide.channel.ductWidthMm / width);
+  return {
+    kind: 'step in width',
+    trimming: TRIM_NOTHING,
+    parts: [toPart(narrow, k, error, width), toPart(wide, 0, 0, width)],
+  };
+}
+
+/** A T: a main straight through and a side at right angles, no wider than the main. */
+function threeArms(arms: readonly Arm[]): Computed | null {
+  const [mainA, mainB, side] = asTee(arms);
+  if (!arms.every(({ channel }) => isEqual(channel.depthMm, arms[0].channel.depthMm))) return null;
+  if (!isEqual(mainA.channel.ductWidthMm, mainB.channel.ductWidthMm)) return null;
+  if (Math.PI - angleBetween(mainA, mainB) > ANGLE_TOLERANCE_RAD) return null;
+  for (const main of [mainA, mainB]) {
+    if (Math.abs(angleBetween(main, side) - Math.PI / 2) > ANGLE_TOLERANCE_RAD) return null;
+  }
+  const width = side.channel.ductWidthMm;
+  const mainWidth = mainA.channel.ductWidthMm;
+  const aspect = width / side.channel.depthMm;
+  if (isEqual(width, mainWidth)) {
+    const { main, side: k, error } = teeEqualK(aspect);
+    return {
+      kind: 'T of equal ducts',
+      trimming: TRIM_NOTHING,
+      parts: [
+        toPart(mainA, main, error, width),
+        toPart(mainB, main, error, width),
+        toPart(side, k, error, width),
+      ],
+    };
+  }
+  if (width > mainWidth) return null;
+  const { mainHalf, side: k, error } = teeIntoWideK(aspect, mainWidth / width);
+  return {
+    kind: 'T into a wider main',
+    trimming: TRIM_TO_WALL,
+    parts: [
+      toPart(mainA, mainHalf, error, width),
+      toPart(mainB, mainHalf, error, width),
+      toPart(side, k, error, width, mainA.channel.stripHalfWidthMm),
+    ],
+  };
+}
+
+/** The two arms that are most nearly straight on first, the third last. */
+function asTee(arms: readonly Arm[]): readonly [Arm, Arm, Arm] {
+  const [a, b, c] = arms;
+  const ab = angleBetween(a, b);
+  const bc = angleBetween(b, c);
+  const ca = angleBetween(c, a);
+  if (ab >= bc && ab >= ca) return [a, b, c];
+  return bc >= ca ? [b, c, a] : [c, a, b];
+}
+
+/** A right-angled cross of four equal ducts. */
+function fourArms(arms: readonly Arm[]): Computed | null {
+  if (!arms.every(({ channel }) => isEqualDuct(channel, arms[0].channel))) return null;
+  const [first, ...rest] = arms;
+  const sorted = [...rest].sort((p, q) => angleBetween(first, q) - angleBetween(first, p));
+  const [opposite, left, right] = sorted;
+  if (Math.PI - angleBetween(first, opposite) > ANGLE_TOLERANCE_RAD) return null;
+  if (Math.PI - angleBetween(left, right) > ANGLE_TOLERANCE_RAD) return null;
+  if (Math.abs(angleBetween(first, left) - Math.PI / 2) > ANGLE_TOLERANCE_RAD) return null;
+  const width = first.channel.ductWidthMm;
+  const { arm: k, bound, error } = crossK(width / first.channel.depthMm);
+  return {
+    kind: 'cross of equal ducts',
+    trimming: TRIM_NOTHING,
+    // A passage has two arms: half of what the star is off by goes to each.
+    parts: arms.map((arm) => toPart(arm, k, bound / 2 + error, width)),
+  };
+}
+
+function angleBetween(a: Arm, b: Arm): number {
+  return Math.atan2(Math.abs(a.dx * b.dy - a.dy * b.dx), a.dx * b.dx + a.dy * b.dy);
+}
+
+function isEqual(a: number, b: number): boolean {
+  return Math.abs(a - b) <= EQUAL * Math.max(a, b);
+}
+
+function isEqualDuct(a: Channel, b: Channel): boolean {
+  return isEqual(a.ductWidthMm, b.ductWidthMm) && isEqual(a.depthMm, b.depthMm);
+}
+
+/** How far each arm runs straight on before the next joint. */
+class RunLengths {
+  readonly arcs: Arcs;
+  private readonly draft: Draft;
+  private readonly sides: ReturnType<typeof sidesByNode>;
+
+  constructor(draft: Draft, arcs: Arcs, sides: ReturnType<typeof sidesByNode>) {
+    this.draft = draft;
+    this.arcs = arcs;
+    this.sides = sides;
+  }
+
+  /**
+   * Whether the arm is free of other joints for `apartMm` beyond `wallMm` from the node: of nodes where channels meet,
+   * rims and corners; and, where it ends dead, for three widths.
+   */
+  isLongEnough(side: number, apartMm: number, wallMm: number): boolean {
+    const { draft, arcs, sides } = this;
+    const arc = side >> 1;
+    const forward = (side & 1) === 0;
+    const width = draft.chip.channels[draft.pieces.centrelineChannel[arcs.centreline[arc]]].ductWidthMm;
+    const need = wallMm + apartMm;
+    const length = arcs.to[arc] - arcs.from[arc];
+    const corner = this.distanceToCorner(arc, forward, Math.max(need, wallMm + DEAD_END_WIDTHS * width));
+    if (corner < need - draft.slackMm) return false;
+    const other = forward ? arcs.nodeTo[arc] : arcs.nodeFrom[arc];
+    if (other < draft.portCount) return length >= need - draft.slackMm;
+    const degree = sides.first[other + 1] - sides.first[other];
+    if (degree === 1) return length >= Math.max(need, wallMm + DEAD_END_WIDTHS * width) - draft.slackMm;
+    // Through a place where one channel only goes on, the next stretch is not looked at: drawn in several subpaths.
+    return length >= need - draft.slackMm;
+  }
+
+  private distanceToCorner(arc: number, forward: boolean, limit: number): number {
+    const { draft, arcs } = this;
+    const { pieces } = draft;
+    const c = arcs.centreline[arc];
+    const start = forward ? arcs.from[arc] : arcs.to[arc];
+    const end = forward ? arcs.to[arc] : arcs.from[arc];
+    const length = pieces.centrelineLength[c];
+    let piece = pieceAt(pieces, c, Math.min(Math.max(start, 0), length));
+    if (!forward && pieces.start[piece] >= start && piece > pieces.firstPiece[c]) piece--;
+    for (;;) {
+      const vertex = forward ? pieces.start[piece] + pieces.length[piece] : pieces.start[piece];
+      const walked = Math.abs(vertex - start);
+      if (walked > limit || (forward ? vertex >= end : vertex <= end)) return Number.POSITIVE_INFINITY;
+      const next = forward ? piece + 1 : piece - 1;
+      if (next < pieces.firstPiece[c] || next >= pieces.firstPiece[c + 1]) return Number.POSITIVE_INFINITY;
+      if (walked > 0 && cornerTurn(draft, Math.min(piece, next)) > ANGLE_TOLERANCE_RAD) return walked;
+      piece = next;
+    }
+  }
+}
+
+/**
+ * Turn at the vertex between a piece and the next, less what belongs to curves cut into chords: a chord of a curve leaves
+ * its tangent by half the angle that it spans.
+ */
+export function cornerTurn(draft: Draft, piece: number): number {
+  const { pieces: p } = draft;
+  if (!endsAtVertex(p, piece)) return 0;
+  const c = p.centreline[piece];
+  const next = piece + 1 < p.firstPiece[c + 1] ? piece + 1 : p.firstPiece[c];
+  return turnBetween(
+    p.x2[piece] - p.x1[piece],
+    p.y2[piece] - p.y1[piece],
+    p.bendRadius[piece],
+    p.x2[next] - p.x1[next],
+    p.y2[next] - p.y1[next],
+    p.bendRadius[next],
+  );
+}
+
+/** Turn from one straight piece (its vector and bend radius, 0 for straight) to the next, without the part of their curves. */
+export function turnBetween(
+  ux: number,
+  uy: number,
+  radius1: number,
+  vx: number,
+  vy: number,
+  radius2: number,
+): number {
+  const turn = Math.abs(Math.atan2(ux * vy - uy * vx, ux * vx + uy * vy));
+  const curved = halfAngle(Math.hypot(ux, uy), radius1) + halfAngle(Math.hypot(vx, vy), radius2);
+  if (curved === 0) return turn;
+  // Where the radius changes along a curve, a chord's own radius is only near the mean: leave it some room.
+  return Math.max(0, turn - 1.25 * curved - 1e-3);
+}
+
+function halfAngle(chord: number, radius: number): number {
+  return radius === 0 ? 0 : Math.asin(Math.min(1, chord / (2 * radius)));
+}
