@@ -107,10 +107,28 @@ export interface ChipLimits {
 /** A fault found while reading or laying out: becomes a finding of findings/. */
 export type ReadingFault =
   | { readonly kind: 'unsized-stroke'; readonly name: string; readonly xMm: number; readonly yMm: number }
-  | { readonly kind: 'filled-outline'; readonly name: string; readonly xMm: number; readonly yMm: number; readonly stroked: boolean }
+  | {
+      readonly kind: 'filled-outline';
+      readonly name: string;
+      readonly xMm: number;
+      readonly yMm: number;
+      readonly stroked: boolean;
+    }
   | { readonly kind: 'assumed-scale'; readonly reason: string }
-  | { readonly kind: 'missing-depth'; readonly channel: string; readonly layer: string; readonly xMm: number; readonly yMm: number }
-  | { readonly kind: 'disguised-stroke'; readonly channel: string; readonly by: string; readonly xMm: number; readonly yMm: number };
+  | {
+      readonly kind: 'missing-depth';
+      readonly channel: string;
+      readonly layer: string;
+      readonly xMm: number;
+      readonly yMm: number;
+    }
+  | {
+      readonly kind: 'disguised-stroke';
+      readonly channel: string;
+      readonly by: string;
+      readonly xMm: number;
+      readonly yMm: number;
+    };
 
 export interface Chip {
   /** The layout's file name as given, without folders. */

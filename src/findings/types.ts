@@ -22,7 +22,12 @@ export interface Finding {
   readonly unit: string | null;
   readonly accepted: AcceptEntry | null;
   /** What to draw at the place: the distance marked, in mm. Optional. */
-  readonly mark?: { readonly x1Mm: number; readonly y1Mm: number; readonly x2Mm: number; readonly y2Mm: number };
+  readonly mark?: {
+    readonly x1Mm: number;
+    readonly y1Mm: number;
+    readonly x2Mm: number;
+    readonly y2Mm: number;
+  };
 }
 
 export interface NotRun {

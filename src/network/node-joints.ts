@@ -301,8 +301,9 @@ function fourArms(arms: readonly Arm[]): Computed | null {
   return {
     kind: 'cross of equal ducts',
     trimming: TRIM_NOTHING,
-    // A passage has two arms: half of what the star is off by goes to each.
-    parts: arms.map((arm) => toPart(arm, k, bound / 2 + error, width)),
+    // A passage has two arms. With two opposite arms in and two out the star is off by three times what it is off by
+    // straight on or round a corner (the cross has two constants, straight and turn; the star one).
+    parts: arms.map((arm) => toPart(arm, k, 1.5 * bound + error, width)),
   };
 }
 

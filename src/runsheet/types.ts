@@ -123,13 +123,17 @@ export interface Tolerances {
   readonly bore: Tolerance | null;
 }
 
-export type ShowUnits = Readonly<Partial<Record<'flow' | 'pressure' | 'wall_shear' | 'residence_time' | 'velocity', string>>>;
+export type ShowUnits = Readonly<
+  Partial<Record<'flow' | 'pressure' | 'wall_shear' | 'residence_time' | 'velocity', string>>
+>;
 
 export interface AcceptEntry extends Placed {
   readonly rule: string;
   readonly at: string;
   /** In the SI unit of the rule's measure (m, Pa, s, m³/s or a plain ratio); null when the rule has no measure. */
   readonly upTo: number | null;
+  /** SI unit of upTo ("m", "Pa", "s", "m³/s", "rad", "" for a ratio): a rule may measure in more than one. Left out: any. */
+  readonly upToUnit?: string;
   readonly because: string;
   readonly by: string;
   /** ISO date as written. */
@@ -150,7 +154,11 @@ export interface RunSheet {
   readonly text: string;
   readonly sha256: string;
   readonly title: string | null;
-  readonly drawing: { readonly number: string | null; readonly revision: string | null; readonly drawnBy: string | null };
+  readonly drawing: {
+    readonly number: string | null;
+    readonly revision: string | null;
+    readonly drawnBy: string | null;
+  };
   readonly unitMm: number | null;
   readonly sizeMm: readonly [number, number] | null;
   readonly outline: string | null;

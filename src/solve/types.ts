@@ -37,6 +37,8 @@ export interface FlowPart {
     | 'flows-do-not-add-up'
     /** No port of the part has any pressure, head, flow or open: nothing flows by anything we know; null. */
     | 'no-drive'
+    /** Ports that open into one node hold different pressures there: null. */
+    | 'conflict'
     /** A depth or width is missing in the part: null. */
     | 'unsized';
   /** Sum of the given flows into the part, m³/s. */

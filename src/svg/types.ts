@@ -1,7 +1,16 @@
 /** A 2 × 3 matrix [a b c d e f]: x' = a x + c y + e, y' = b x + d y + f (SVG's order). */
 export type Matrix = readonly [number, number, number, number, number, number];
 
-export type ShapeTag = 'path' | 'line' | 'polyline' | 'polygon' | 'rect' | 'circle' | 'ellipse' | 'text' | 'image';
+export type ShapeTag =
+  | 'path'
+  | 'line'
+  | 'polyline'
+  | 'polygon'
+  | 'rect'
+  | 'circle'
+  | 'ellipse'
+  | 'text'
+  | 'image';
 
 /** Absolute path commands in the element's own coordinates; arcs stay arcs. */
 export type PathCommand =
@@ -16,7 +25,13 @@ export type PathCommand =
       readonly x: number;
       readonly y: number;
     }
-  | { readonly kind: 'quadratic'; readonly x1: number; readonly y1: number; readonly x: number; readonly y: number }
+  | {
+      readonly kind: 'quadratic';
+      readonly x1: number;
+      readonly y1: number;
+      readonly x: number;
+      readonly y: number;
+    }
   | {
       readonly kind: 'arc';
       readonly rx: number;

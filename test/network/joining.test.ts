@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { buildNetwork } from '../../src/network/build.ts';
-import { NODE_KINDS, type Network } from '../../src/network/types.ts';
+import { type Network, NODE_KINDS } from '../../src/network/types.ts';
 import { type ChannelSpec, chipOf, type PortSpec } from './chip-of.ts';
 
 /** What a network is, free of numbering: each reach by its name with its nodes and lengths. */
@@ -9,7 +9,8 @@ function describeNetwork(channels: readonly ChannelSpec[], ports: readonly PortS
 }
 
 function summary(network: Network) {
-  const reaches: Record<string, { from: string; to: string; drawn: number; duct: number; segments: number }> = {};
+  const reaches: Record<string, { from: string; to: string; drawn: number; duct: number; segments: number }> =
+    {};
   for (let r = 0; r < network.reachCount; r++) {
     reaches[network.reachName(r)] = {
       from: network.nodeName(network.reachFrom[r]),
@@ -63,7 +64,9 @@ describe('rule 2: meetings', () => {
   });
 
   it('joins a stroke that crosses itself into a loop and two tails', () => {
-    const { reaches } = describeNetwork([{ name: 'a', widthMm: 0.1, lines: [[0, 0, 5, 0, 5, 2, 2, 2, 2, -3]] }]);
+    const { reaches } = describeNetwork([
+      { name: 'a', widthMm: 0.1, lines: [[0, 0, 5, 0, 5, 2, 2, 2, 2, -3]] },
+    ]);
     expect(Object.keys(reaches)).toEqual(['a:1', 'a:2', 'a:3']);
     expect(reaches['a:2'].from).toBe(reaches['a:2'].to);
     expect(reaches['a:2'].duct).toBeCloseTo(3 + 2 + 3 + 2, 12);
@@ -88,7 +91,10 @@ describe('rules 3 to 5: branches, overshoot and trimming', () => {
   ] as const;
   for (const [where, y] of depths) {
     it(`gives a square branch drawn to ${where} the length to the wall plus the trimmed rest`, () => {
-      const { reaches } = describeNetwork([MAIN, { name: 'side', widthMm: 0.1, lines: [[5, 4, 5, y]] }], [IN, OUT]);
+      const { reaches } = describeNetwork(
+        [MAIN, { name: 'side', widthMm: 0.1, lines: [[5, 4, 5, y]] }],
+        [IN, OUT],
+      );
       // p = 0.2 mm inside the main strip, counted with w/W = 1/4
       expect(reaches.side.duct).toBeCloseTo(3.8 + 0.2 / 4, 12);
       expect(reaches['main:1'].duct).toBeCloseTo(4.5, 12);
@@ -98,7 +104,10 @@ describe('rules 3 to 5: branches, overshoot and trimming', () => {
 
   for (const [where, y] of depths) {
     it(`gives a branch at 45° drawn to ${where} the same length`, () => {
-      const { reaches } = describeNetwork([MAIN, { name: 'side', widthMm: 0.1, lines: [[9, 4, 5 + y, y]] }], [IN, OUT]);
+      const { reaches } = describeNetwork(
+        [MAIN, { name: 'side', widthMm: 0.1, lines: [[9, 4, 5 + y, y]] }],
+        [IN, OUT],
+      );
       expect(reaches.side.duct).toBeCloseTo((3.8 + 0.2 / 4) * Math.SQRT2, 12);
     });
   }
@@ -209,7 +218,10 @@ describe('rules 3 to 5: branches, overshoot and trimming', () => {
   });
 
   it('leaves an end that stops outside every strip open', () => {
-    const { network, nodes } = describeNetwork([MAIN, { name: 'side', widthMm: 0.1, lines: [[5, 4, 5, 0.21]] }]);
+    const { network, nodes } = describeNetwork([
+      MAIN,
+      { name: 'side', widthMm: 0.1, lines: [[5, 4, 5, 0.21]] },
+    ]);
     expect(network.reachCount).toBe(2);
     expect(Object.values(nodes).every((kind) => kind === 'end')).toBe(true);
   });
@@ -226,7 +238,9 @@ describe('rules 3 to 5: branches, overshoot and trimming', () => {
   });
 
   it('joins a spiral end to its own earlier turn, more than two widths back', () => {
-    const { reaches } = describeNetwork([{ name: 'a', widthMm: 0.2, lines: [[0, 0, 5, 0, 5, 3, 2, 3, 2, 0.05]] }]);
+    const { reaches } = describeNetwork([
+      { name: 'a', widthMm: 0.2, lines: [[0, 0, 5, 0, 5, 3, 2, 3, 2, 0.05]] },
+    ]);
     expect(Object.keys(reaches)).toEqual(['a:1', 'a:2']);
     expect(reaches['a:2'].duct).toBeCloseTo(3 + 3 + 3 + 3, 12);
   });

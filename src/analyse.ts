@@ -1,0 +1,61 @@
+import { assembleChip } from './chip/assemble.ts';
+import type { Chip } from './chip/types.ts';
+import { findAll } from './findings/check.ts';
+import type { FindingReport } from './findings/types.ts';
+import type { Layout } from './layout/types.ts';
+import { buildNetwork } from './network/build.ts';
+import type { Network } from './network/types.ts';
+import type { RunSheet } from './runsheet/types.ts';
+import { drivesOf } from './solve/drives.ts';
+import { factorFlow, flowStateOf, kindsOf, prepareFlow } from './solve/flow-state.ts';
+import { centrelineFlow, jointFlowShares } from './solve/joint-share.ts';
+import type { FlowState } from './solve/types.ts';
+
+/** A layout under one run sheet (or one of its cases), joined, solved and judged. */
+export interface Analysis {
+  readonly chip: Chip;
+  readonly network: Network;
+  readonly flow: FlowState;
+  readonly findings: FindingReport;
+  /** How far joints that are not resolved could move each port's flow, as a share of it; NaN where there is none. */
+  readonly jointFlowShare: Float64Array;
+  /** The flows that counting centrelines alone would give; found when asked for. */
+  readonly centrelineFlow: () => FlowState;
+}
+
+export interface AnalysisInput {
+  readonly layout: Layout;
+  readonly sheet: RunSheet | null;
+  /** File name of the layout, for messages and the report. */
+  readonly file: string;
+  readonly layoutSha256: string;
+}
+
+/** Tells which stage is about to begin; a caller may show it, or throw to stop. */
+export type OnStage = (stage: string) => Promise<void>;
+
+/**
+ * Layout × RunSheet → Chip → Network → FlowState → findings: the main job on one case.
+ *
+ * Errors: InputError where the run sheet and the layout do not fit each other, or a size limit is passed.
+ */
+export async function analyse(input: AnalysisInput, onStage: OnStage = async () => {}): Promise<Analysis> {
+  const chip = assembleChip(input);
+  await onStage('joining channels');
+  const network = buildNetwork(chip);
+  await onStage('solving flows');
+  const drives = drivesOf(chip);
+  const factor = factorFlow(prepareFlow(network), kindsOf(drives));
+  const flow = flowStateOf(factor, drives);
+  const jointFlowShare = jointFlowShares(network, factor, drives, flow);
+  await onStage('checking rules');
+  const findings = findAll({ chip, network, flow });
+  return {
+    chip,
+    network,
+    flow,
+    findings,
+    jointFlowShare,
+    centrelineFlow: () => centrelineFlow(network, factor, drives),
+  };
+}

@@ -1,0 +1,102 @@
+import type { Centreline, Stroke } from '../layout/types.ts';
+import { isotropicSection } from '../physics/section.ts';
+import { depthOf, type LayerFinder } from './layers.ts';
+import type { SettingsFinder } from './settings.ts';
+import type { Channel, ReadingFault } from './types.ts';
+import { UniqueNames } from './unique-names.ts';
+
+export interface ChannelReading {
+  readonly channels: readonly Channel[];
+  readonly faults: readonly ReadingFault[];
+  /** Drawn names of all strokes read, also of those without a width. */
+  readonly drawnNames: ReadonlySet<string>;
+  /** Whether a name was made up for an unnamed or second stroke. */
+  readonly isMade: (name: string) => boolean;
+}
+
+/**
+ * Strokes as channels: in millimetres, with depth, duct width and settings.
+ * A stroke without a width or a depth is a fault; one without a width is no channel.
+ * @throws InputError for a `data-depth` that is no depth, or a tie between patterns of the run sheet
+ */
+export function readChannels(
+  strokes: readonly Stroke[],
+  unitMm: number,
+  finder: LayerFinder,
+  settings: SettingsFinder,
+  file: string,
+): ChannelReading {
+  const drawnNames = new Set<string>();
+  for (const { name } of strokes) if (name !== null) drawnNames.add(name);
+  const names = new UniqueNames(drawnNames);
+  const channels: Channel[] = [];
+  const faults: ReadingFault[] = [];
+  for (let i = 0; i < strokes.length; i++) {
+    const stroke = strokes[i]!;
+    const name = stroke.name === null ? names.ofUnnamed(`channel-${i + 1}`) : names.ofDrawn(stroke.name);
+    const own = stroke.name === null ? null : settings.of(stroke.name);
+    if (stroke.width === null || !(stroke.width > 0)) {
+      faults.push({ kind: 'unsized-stroke', name, ...startOf(stroke, unitMm) });
+      continue;
+    }
+    const layerIndex = finder.indexOf(stroke.groups);
+    const layer = finder.layers[layerIndex]!;
+    const { depthM, origin } = depthOf(stroke.dataDepth, layer, name, file);
+    if (Number.isNaN(depthM)) {
+      faults.push({ kind: 'missing-depth', channel: name, layer: layer.name, ...startOf(stroke, unitMm) });
+    }
+    for (const by of stroke.disguises) {
+      faults.push({ kind: 'disguised-stroke', channel: name, by, ...startOf(stroke, unitMm) });
+    }
+    const drawnWidthMm = stroke.width * unitMm;
+    const depthMm = depthM * 1000;
+    const { ductWidthMm, stripHalfWidthMm } = sectionOf(drawnWidthMm, depthMm, layer.profile);
+    channels.push({
+      name,
+      drawnName: stroke.name,
+      ordinal: stroke.ordinal,
+      layer: layerIndex,
+      plane: layer.plane,
+      drawnWidthMm,
+      ductWidthMm,
+      stripHalfWidthMm,
+      depthMm,
+      depthOrigin: origin,
+      profile: layer.profile,
+      linecap: stroke.linecap,
+      centrelines: unitMm === 1 ? stroke.centrelines : stroke.centrelines.map((line) => inMm(line, unitMm)),
+      disguises: stroke.disguises,
+      settings: own,
+    });
+  }
+  return { channels, faults, drawnNames, isMade: (name) => names.isMade(name) };
+}
+
+function startOf(stroke: Stroke, unitMm: number): { readonly xMm: number; readonly yMm: number } {
+  const points = stroke.centrelines[0]?.points;
+  return { xMm: (points?.[0] ?? Number.NaN) * unitMm, yMm: (points?.[1] ?? Number.NaN) * unitMm };
+}
+
+interface Section {
+  readonly ductWidthMm: number;
+  readonly stripHalfWidthMm: number;
+}
+
+/** The strip of a channel of unknown depth is taken as drawn, so that joins can still be found. */
+function sectionOf(drawnWidthMm: number, depthMm: number, profile: Channel['profile']): Section {
+  if (profile === 'rectangle') return { ductWidthMm: drawnWidthMm, stripHalfWidthMm: drawnWidthMm / 2 };
+  if (Number.isNaN(depthMm)) return { ductWidthMm: Number.NaN, stripHalfWidthMm: drawnWidthMm / 2 };
+  // The section is made of lengths alone, so millimetres serve as well as metres.
+  const { ductWidthM, stripWidthM } = isotropicSection(drawnWidthMm, depthMm);
+  return { ductWidthMm: ductWidthM, stripHalfWidthMm: stripWidthM / 2 };
+}
+
+function inMm({ points, closed, bendRadius }: Centreline, unitMm: number): Centreline {
+  return { points: scaled(points, unitMm), closed, bendRadius: scaled(bendRadius, unitMm) };
+}
+
+function scaled(values: Float64Array, factor: number): Float64Array {
+  const result = new Float64Array(values.length);
+  for (let i = 0; i < values.length; i++) result[i] = values[i]! * factor;
+  return result;
+}

@@ -1,0 +1,85 @@
+import {
+  glycerolDensity,
+  glycerolViscosity,
+  massFractionFromVolume,
+  waterDensity,
+  waterViscosity,
+} from '../physics/fluid.ts';
+import type { FluidSpec, RunSheet } from '../runsheet/types.ts';
+import { refuse } from './complain.ts';
+import { DEFAULT_TEMPERATURE_K } from './defaults.ts';
+import type { Fluid } from './types.ts';
+
+/**
+ * The fluid of the chip at the chip's temperature: water at 25 °C when the run sheet says nothing.
+ * @throws InputError when the temperature, or that of a tubing piece, is outside what the published values cover
+ */
+export function resolveFluid(sheet: RunSheet | null): Fluid {
+  const temperatureK = sheet?.temperatureK ?? DEFAULT_TEMPERATURE_K;
+  const spec: FluidSpec = sheet?.fluid ?? { kind: 'water' };
+  if (sheet === null) return fluidOf(spec, temperatureK, false);
+  const fluid = known(sheet, sheet.temperatureK === null ? ['fluid'] : ['temperature'], () =>
+    fluidOf(spec, temperatureK, sheet.temperatureK !== null),
+  );
+  for (const [name, port] of Object.entries(sheet.ports)) {
+    for (const [i, piece] of port.tubing.entries()) {
+      if (piece.temperatureK === null) continue;
+      const at = piece.temperatureK;
+      // One piece may be written without a list.
+      const path =
+        sheet.lineOf(['ports', name, 'tubing', i]) === null
+          ? ['ports', name, 'tubing']
+          : ['ports', name, 'tubing', i];
+      known(sheet, [...path, 'temperature'], () => fluid.viscosityAt(at));
+    }
+  }
+  return fluid;
+}
+
+function fluidOf(spec: FluidSpec, temperatureK: number, temperatureGiven: boolean): Fluid {
+  switch (spec.kind) {
+    case 'water':
+      return {
+        name: 'water',
+        temperatureK,
+        viscosityPaS: waterViscosity(temperatureK),
+        densityKgM3: waterDensity(temperatureK),
+        source: 'IAPWS SR6-08(2011)',
+        viscosityAt: waterViscosity,
+      };
+    case 'custom':
+      return {
+        name: 'as given',
+        temperatureK,
+        viscosityPaS: spec.viscosityPaS,
+        densityKgM3: spec.densityKgM3,
+        source: temperatureGiven ? 'run sheet; the temperature given is ignored' : 'run sheet',
+        viscosityAt: () => spec.viscosityPaS,
+      };
+    case 'glycerol': {
+      const mass = spec.by === 'mass' ? spec.share : massFractionFromVolume(spec.share, temperatureK);
+      const percent = Number((spec.share * 100).toPrecision(6));
+      return {
+        name: `glycerol in water, ${percent} % by ${spec.by}`,
+        temperatureK,
+        viscosityPaS: glycerolViscosity(temperatureK, mass),
+        densityKgM3: glycerolDensity(temperatureK, mass),
+        source: 'viscosity: Cheng 2008; density: Volk & Kähler 2018',
+        // The mixture keeps its mass fraction in warmer or colder tubing.
+        viscosityAt: (kelvin) => glycerolViscosity(kelvin, mass),
+      };
+    }
+    default:
+      return spec satisfies never;
+  }
+}
+
+function known<T>(sheet: RunSheet, path: readonly (string | number)[], value: () => T): T {
+  try {
+    return value();
+  } catch (error) {
+    if (!(error instanceof RangeError)) throw error;
+    const key = path.map((step) => (typeof step === 'number' ? `[${step}]` : `.${step}`)).join('');
+    return refuse(sheet, path, `${key.slice(1)}: ${error.message}`, { cause: error });
+  }
+}

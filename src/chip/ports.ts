@@ -1,0 +1,143 @@
+import Flatbush from 'flatbush';
+import { InputError } from '../errors.ts';
+import type { Hole } from '../layout/types.ts';
+import { layerKey } from '../runsheet/names.ts';
+import { quote } from '../runsheet/quote.ts';
+import type { RunSheet } from '../runsheet/types.ts';
+import type { Tally } from './select.ts';
+import type { Port } from './types.ts';
+import { UniqueNames } from './unique-names.ts';
+
+export interface PortReading {
+  /** In document order. */
+  readonly ports: readonly Port[];
+  /** Circles that are no ports because of their size; filled ones may be drawn-out channels. */
+  readonly unsuitable: readonly Hole[];
+  readonly drawnNames: ReadonlySet<string>;
+  readonly isMade: (name: string) => boolean;
+}
+
+/**
+ * Circles as ports: of the right size and layer, concentric ones together with the largest as the well.
+ * @param diameterM smallest and largest, both included with a relative slack of 1e-6
+ * @throws InputError when two ports have one name
+ */
+export function readPorts(
+  holes: readonly Hole[],
+  unitMm: number,
+  sheet: RunSheet | null,
+  diameterM: readonly [number, number],
+  file: string,
+  ignored: Tally,
+  setAside: Map<string, string>,
+): PortReading {
+  const layer = sheet?.portsLayer == null ? null : layerKey(sheet.portsLayer);
+  const suitable: Hole[] = [];
+  const unsuitable: Hole[] = [];
+  const note = (hole: Hole, why: string): void => {
+    if (hole.name !== null && !setAside.has(hole.name)) setAside.set(hole.name, why);
+  };
+  for (const hole of holes) {
+    const diameterMm = 2 * hole.radius * unitMm;
+    if (layer !== null && !hole.groups.some((group) => layerKey(group) === layer)) {
+      ignored.add('circle outside the ports layer');
+      note(hole, 'it is not in the ports layer');
+    } else if (
+      diameterMm < diameterM[0] * 1000 * (1 - SLACK) ||
+      diameterMm > diameterM[1] * 1000 * (1 + SLACK)
+    ) {
+      unsuitable.push(hole);
+      const [least, most] = diameterM.map((limit) => number(limit * 1000));
+      note(
+        hole,
+        `its diameter of ${number(diameterMm)} mm is outside limits.port_diameter, ${least} mm to ${most} mm`,
+      );
+    } else {
+      suitable.push(hole);
+    }
+  }
+  const wells = concentric(suitable, unitMm);
+  const drawn = wells.map((circles) => ({ well: circles[0]!, name: nameOf(circles, sheet) }));
+  drawn.sort((a, b) => a.well.ordinal - b.well.ordinal);
+  refuseTwins(drawn, unitMm, file);
+  const drawnNames = new Set<string>();
+  for (const { name } of drawn) if (name !== null) drawnNames.add(name);
+  const names = new UniqueNames(drawnNames);
+  const ports = drawn.map(({ well, name }, i): Port => {
+    const entry = name === null ? undefined : sheet?.ports[name];
+    return {
+      name: name === null ? names.ofUnnamed(`port-${i + 1}`) : names.ofDrawn(name),
+      drawnName: name,
+      ordinal: well.ordinal,
+      xMm: well.x * unitMm,
+      yMm: well.y * unitMm,
+      radiusMm: well.radius * unitMm,
+      condition: entry?.condition ?? { kind: 'unset' },
+      tubing: entry?.tubing ?? [],
+      expect: entry?.expect ?? null,
+    };
+  });
+  return { ports, unsuitable, drawnNames, isMade: (name) => names.isMade(name) };
+}
+
+const SLACK = 1e-6;
+
+/** Centres within 1 µm, or within 1 % of the larger radius, are one centre. Each group has its largest circle first. */
+function concentric(holes: readonly Hole[], unitMm: number): readonly (readonly Hole[])[] {
+  if (holes.length === 0) return [];
+  const index = new Flatbush(holes.length);
+  for (const { x, y } of holes) index.add(x, y, x, y);
+  index.finish();
+  const order = holes.map((_, i) => i).sort((a, b) => holes[b]!.radius - holes[a]!.radius || a - b);
+  const taken = new Uint8Array(holes.length);
+  const groups: Hole[][] = [];
+  for (const largest of order) {
+    if (taken[largest]) continue;
+    const { x, y, radius } = holes[largest]!;
+    const reach = Math.max(1e-3 / unitMm, 0.01 * radius) * (1 + 1e-9);
+    const members: number[] = [];
+    for (const i of index.search(x - reach, y - reach, x + reach, y + reach)) {
+      if (taken[i] || Math.hypot(holes[i]!.x - x, holes[i]!.y - y) > reach) continue;
+      taken[i] = 1;
+      members.push(i);
+    }
+    members.sort((a, b) => holes[b]!.radius - holes[a]!.radius || a - b);
+    groups.push(members.map((i) => holes[i]!));
+  }
+  return groups;
+}
+
+/** Of the names of concentric circles the one that the run sheet uses, else the largest circle's. */
+function nameOf(circles: readonly Hole[], sheet: RunSheet | null): string | null {
+  let first: string | null = null;
+  for (const { name } of circles) {
+    if (name === null) continue;
+    if (sheet?.ports[name] !== undefined) return name;
+    first ??= name;
+  }
+  return first;
+}
+
+function refuseTwins(
+  drawn: readonly { readonly well: Hole; readonly name: string | null }[],
+  unitMm: number,
+  file: string,
+): void {
+  const first = new Map<string, Hole>();
+  for (const { well, name } of drawn) {
+    if (name === null) continue;
+    const twin = first.get(name);
+    if (twin !== undefined) {
+      const at = ({ x, y }: Hole): string => `(${number(x * unitMm)}, ${number(y * unitMm)}) mm`;
+      throw new InputError(
+        file,
+        `two ports are named ${quote(name)}, at ${at(twin)} and ${at(well)}; give each a name of its own in the drawing`,
+      );
+    }
+    first.set(name, well);
+  }
+}
+
+function number(value: number): string {
+  return String(Number(value.toPrecision(6)));
+}

@@ -1,0 +1,132 @@
+import type { Centreline, Hole, Layout, LayoutItem, Outline, Stroke } from '../layout/types.ts';
+import { isPattern, layerKey, matches } from '../runsheet/names.ts';
+import type { RunSheet } from '../runsheet/types.ts';
+import { CHIP_EDGE_NAME } from './defaults.ts';
+import type { DrawnEdge } from './edge.ts';
+import type { LayerFinder } from './layers.ts';
+import { indexRings, type RingIndex } from './rings.ts';
+
+/** What of a layout is read, in document order, and what was passed over. */
+export interface Selection {
+  readonly strokes: readonly Stroke[];
+  readonly holes: readonly Hole[];
+  readonly outlines: readonly Outline[];
+  readonly ignored: Tally;
+  /** Names drawn but not read, with why: for messages about names that are not found. */
+  readonly setAside: Map<string, string>;
+}
+
+/** Counts by kind. */
+export class Tally {
+  readonly #counts = new Map<string, number>();
+
+  add(kind: string, count = 1): void {
+    this.#counts.set(kind, (this.#counts.get(kind) ?? 0) + count);
+  }
+
+  /** Sorted by kind, without a prototype. */
+  toRecord(): Readonly<Record<string, number>> {
+    const record: Record<string, number> = Object.create(null);
+    for (const kind of [...this.#counts.keys()].sort()) record[kind] = this.#counts.get(kind)!;
+    return record;
+  }
+}
+
+/**
+ * Leaves out what the run sheet ignores by name or layer, what lies wholly outside the `outline` that it names, the
+ * chip edge itself, and what reading has already set aside.
+ */
+export function selectItems(
+  layout: Layout,
+  sheet: RunSheet | null,
+  edge: DrawnEdge | null,
+  finder: LayerFinder,
+): Selection {
+  const strokes: Stroke[] = [];
+  const holes: Hole[] = [];
+  const outlines: Outline[] = [];
+  const ignored = new Tally();
+  const setAside = new Map<string, string>();
+  for (const [kind, count] of Object.entries(layout.unread)) ignored.add(kind, count);
+  const isIgnored = ignoreTest(sheet?.ignore ?? []);
+  const inside = edge !== null && sheet?.outline != null ? indexRings([edge.rings]) : null;
+
+  const leaveOut = (item: LayoutItem, kind: string, why: string): void => {
+    ignored.add(kind);
+    if (item.name !== null && !setAside.has(item.name)) setAside.set(item.name, why);
+  };
+  for (const item of layout.items) {
+    if (edge?.ordinals.has(item.ordinal) || item.name === CHIP_EDGE_NAME) continue;
+    if (isIgnored(item)) {
+      leaveOut(item, 'named under ignore', 'the run sheet ignores it');
+    } else if (finder.entryOf(item.groups)?.kind === 'ignore') {
+      leaveOut(item, 'in an ignored layer', 'its layer is set to ignore');
+    } else if (item.kind === 'ignored') {
+      leaveOut(item, item.reason, `it is a ${item.reason}`);
+    } else {
+      const kept = inside === null ? item : partInside(item, inside);
+      if (kept === null) leaveOut(item, 'outside the outline', 'it lies outside the outline');
+      else if (kept.kind === 'stroke') strokes.push(kept);
+      else if (kept.kind === 'hole') holes.push(kept);
+      else outlines.push(kept);
+    }
+  }
+  return { strokes, holes, outlines, ignored, setAside };
+}
+
+/** Elements by their exact name, groups without regard to case; patterns likewise. */
+function ignoreTest(ignore: readonly string[]): (item: LayoutItem) => boolean {
+  if (ignore.length === 0) return () => false;
+  const element = nameTest(ignore);
+  const group = nameTest(ignore.map(layerKey));
+  const byGroups = new Map<readonly string[], boolean>();
+  const groupsIgnored = (groups: readonly string[]): boolean => {
+    const known = byGroups.get(groups);
+    if (known !== undefined) return known;
+    const answer = groups.some((name) => group(layerKey(name)));
+    byGroups.set(groups, answer);
+    return answer;
+  };
+  return (item) => (item.name !== null && element(item.name)) || groupsIgnored(item.groups);
+}
+
+function nameTest(entries: readonly string[]): (name: string) => boolean {
+  const exact = new Set(entries.map((entry) => entry.trim()));
+  const patterns = entries.filter(isPattern);
+  return (name) => exact.has(name) || patterns.some((pattern) => matches(pattern, name));
+}
+
+type Read = Stroke | Hole | Outline;
+
+/** The item without its centrelines that lie wholly outside; null when nothing is left. */
+function partInside(item: Read, rings: RingIndex): Read | null {
+  switch (item.kind) {
+    case 'stroke': {
+      const centrelines = item.centrelines.filter((line) => lineMeets(line, rings));
+      if (centrelines.length === item.centrelines.length) return item;
+      return centrelines.length === 0 ? null : { ...item, centrelines };
+    }
+    case 'hole': {
+      const touched =
+        rings.contains(item.x, item.y) || rings.groupsWithin(item.x, item.y, item.radius).length > 0;
+      return touched ? item : null;
+    }
+    case 'outline':
+      return item.rings.some((ring) => pointsMeet(ring, rings)) ? item : null;
+    default:
+      return item satisfies never;
+  }
+}
+
+function lineMeets({ points }: Centreline, rings: RingIndex): boolean {
+  return pointsMeet(points, rings);
+}
+
+function pointsMeet(points: Float64Array, rings: RingIndex): boolean {
+  // Most lines have their first point inside; a line with no point inside may still cross.
+  for (let i = 0; i < points.length; i += 2) if (rings.contains(points[i]!, points[i + 1]!)) return true;
+  for (let i = 2; i < points.length; i += 2) {
+    if (rings.crosses(points[i - 2]!, points[i - 1]!, points[i]!, points[i + 1]!)) return true;
+  }
+  return false;
+}

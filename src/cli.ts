@@ -1,0 +1,137 @@
+import { Command, CommanderError, Option } from 'commander';
+import { check } from './commands/check.ts';
+import { Interrupted, type Io, WriteError } from './commands/io.ts';
+import { FORMATS } from './commands/options.ts';
+import { InputError } from './errors.ts';
+import { VERSION } from './version.ts';
+
+export const EXIT_UNUSABLE = 2;
+export const EXIT_NOT_WRITTEN = 3;
+export const EXIT_BUG = 70;
+export const EXIT_INTERRUPTED = 130;
+
+/**
+ * The whole program as a function: argv without node and script, the world as `io`; returns the exit code and never throws.
+ * 0 ready, 1 hold, 2 unusable input, 3 a report could not be written, 70 a bug of ours, 130 interrupted.
+ */
+export async function run(argv: readonly string[], io: Io): Promise<number> {
+  let code = 0;
+  const program = toProgram(io, (result) => {
+    code = result;
+  });
+  try {
+    if (argv.length === 0) {
+      io.err(`${shortUsage()}\n`);
+      return EXIT_UNUSABLE;
+    }
+    await program.parseAsync(argv as string[], { from: 'user' }); // commander types its argument as mutable and does not change it
+    return code;
+  } catch (error) {
+    return codeOf(error, io);
+  }
+}
+
+function codeOf(error: unknown, io: Io): number {
+  if (error instanceof CommanderError) {
+    return error.exitCode === 0 ? 0 : EXIT_UNUSABLE;
+  }
+  if (error instanceof InputError) {
+    io.err(`rillcheck: ${oneLine(error.message)}\n`);
+    return EXIT_UNUSABLE;
+  }
+  if (error instanceof WriteError) {
+    io.err(`rillcheck: ${oneLine(error.message)}\n`);
+    return EXIT_NOT_WRITTEN;
+  }
+  if (error instanceof Interrupted) {
+    io.err('rillcheck: interrupted; nothing was written\n');
+    return EXIT_INTERRUPTED;
+  }
+  const text = error instanceof Error ? `${error.name}: ${error.message}` : String(error);
+  io.err(
+    `rillcheck: a bug in rillcheck ${VERSION}: ${oneLine(text)}; please report it with the layout and run sheet (DEBUG=rillcheck shows more)\n`,
+  );
+  if (io.env.DEBUG === 'rillcheck' && error instanceof Error) io.err(`${error.stack ?? ''}\n`);
+  return EXIT_BUG;
+}
+
+/** Messages may hold names from the drawing: no control characters and no line breaks reach the terminal. */
+function oneLine(text: string): string {
+  return text.replace(/[\u0000-\u001f\u007f-\u009f\u2028\u2029\u202a-\u202e\u2066-\u2069]+/g, ' ').trim();
+}
+
+function shortUsage(): string {
+  return [
+    'usage: rillcheck check LAYOUT [options]',
+    'Checks a microfluidic chip drawn as SVG before fabrication. More: rillcheck --help',
+  ].join('\n');
+}
+
+const EXIT_CODES = `
+Exit codes:
+  0    ready: no blocker
+  1    hold: at least one blocker
+  2    the layout, run sheet or command line could not be used
+  3    a report could not be written
+  70   a bug in rillcheck
+  130  interrupted`;
+
+function toProgram(io: Io, finish: (code: number) => void): Command {
+  const program = new Command('rillcheck')
+    .description(
+      'Checks a microfluidic chip drawn as SVG before fabrication: pressures, flows, wall shear, residence time, and what is wrong with the layout.',
+    )
+    .version(VERSION, '-V, --version')
+    .exitOverride()
+    .configureOutput({
+      writeOut: (text) => void io.out(text),
+      writeErr: (text) => io.err(text),
+      outputError: (text, write) =>
+        write(`rillcheck: ${oneLine(text.replace(/^error: /, ''))}; see rillcheck --help\n`),
+    })
+    .showSuggestionAfterError(true)
+    .addHelpText(
+      'after',
+      `
+Examples:
+  rillcheck check culture.svg                      read culture.svg and culture.run.yaml, write reports/culture.pdf and .svg
+  rillcheck check culture.svg --json               the result as JSON on stdout, no files
+  rillcheck check culture.svg -r trial.run.yaml    another run sheet; reports are named after it
+${EXIT_CODES}`,
+    );
+
+  program
+    .command('check')
+    .description('read, check, solve and report a layout')
+    .argument('<LAYOUT>', 'the SVG drawing of the chip')
+    .option('-r, --run <FILE>', 'the run sheet (default: LAYOUT with .run.yaml; - for stdin)')
+    .option('--case <NAME>', 'only this case')
+    .option('-o, --out <DIR>', 'where reports go', 'reports')
+    .option('-f, --formats <LIST>', `of ${FORMATS.join(',')}, or none (default: pdf,svg; none with --json)`)
+    .option('--json', 'print the result on stdout as JSON, and nothing else there')
+    .addOption(
+      new Option('--detail <LEVEL>', 'how deep JSON goes')
+        .choices(['ports', 'reaches', 'segments'])
+        .default('segments'),
+    )
+    .addOption(
+      new Option('--colour <QUANTITY>', 'what colours the SVG picture')
+        .choices(['shear', 'pressure', 'flow', 'residence'])
+        .default('pressure'),
+    )
+    .addOption(new Option('--paper <SIZE>', 'paper of the PDF').choices(['a4', 'letter']).default('a4'))
+    .option('-q, --quiet', 'print only the verdict')
+    .option('--no-color', 'no colour on the terminal')
+    .addHelpText(
+      'after',
+      `
+Examples:
+  rillcheck check chip.svg -o out -f pdf,csv
+  rillcheck check chip.svg --json --detail ports
+  rillcheck check chip.svg --colour shear --quiet
+${EXIT_CODES}`,
+    )
+    .action(async (layout: string, options) => finish(await check(layout, options, io)));
+
+  return program;
+}

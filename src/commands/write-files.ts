@@ -1,0 +1,86 @@
+import { randomBytes } from 'node:crypto';
+import { mkdir, open, rename, rm } from 'node:fs/promises';
+import { dirname, join } from 'node:path';
+import { Interrupted, type Io, WriteError } from './io.ts';
+
+export interface OutFile {
+  readonly name: string;
+  readonly content: Uint8Array | Iterable<string>;
+}
+
+/**
+ * Writes files whole or not at all: each to a temporary file beside its place, then renamed once all are written. On any
+ * failure or interruption nothing of this call is left behind.
+ *
+ * Errors: WriteError (folder or file can't be written, disk full), Interrupted.
+ */
+export async function writeFiles(folder: string, files: readonly OutFile[], io: Io): Promise<string[]> {
+  const temporary: { readonly from: string; readonly to: string }[] = [];
+  let current = folder;
+  try {
+    await mkdir(folder, { recursive: true });
+    for (const file of files) {
+      const to = join(folder, file.name);
+      const from = join(dirname(to), `.${file.name}.${process.pid}.${randomBytes(4).toString('hex')}.tmp`);
+      current = to;
+      temporary.push({ from, to });
+      await writeWhole(from, file.content, io);
+    }
+    if (io.isInterrupted()) throw new Interrupted();
+    for (const { from, to } of temporary) {
+      current = to;
+      await rename(from, to);
+    }
+  } catch (error) {
+    await Promise.all(temporary.map(({ from }) => rm(from, { force: true }).catch(() => undefined)));
+    if (error instanceof Interrupted || !isSystemError(error)) throw error;
+    throw new WriteError(
+      `${current}: can't be written (${reason(error)}); choose another folder with --out, or write nothing with --formats none`,
+      { cause: error },
+    );
+  }
+  return temporary.map(({ to }) => to);
+}
+
+const CHUNK_CHARACTERS = 1 << 20;
+
+async function writeWhole(path: string, content: OutFile['content'], io: Io): Promise<void> {
+  const handle = await open(path, 'wx');
+  try {
+    if (content instanceof Uint8Array) {
+      await handle.writeFile(content);
+    } else {
+      let chunk = '';
+      for (const text of content) {
+        chunk += text;
+        if (chunk.length < CHUNK_CHARACTERS) continue;
+        await handle.appendFile(chunk, 'utf8');
+        chunk = '';
+        if (io.isInterrupted()) throw new Interrupted();
+      }
+      await handle.appendFile(chunk, 'utf8');
+    }
+    await handle.sync();
+  } finally {
+    await handle.close();
+  }
+}
+
+function isSystemError(error: unknown): error is NodeJS.ErrnoException {
+  return error instanceof Error && 'code' in error;
+}
+
+const REASONS: Readonly<Record<string, string>> = {
+  EACCES: 'permission denied',
+  EPERM: 'not permitted',
+  EROFS: 'read-only file system',
+  ENOSPC: 'no space left on the disk',
+  ENOTDIR: 'a part of the path is a file',
+  EEXIST: 'a file stands where the folder should be',
+  EISDIR: 'a folder stands where the file should be',
+  ENAMETOOLONG: 'the name is too long',
+};
+
+function reason(error: NodeJS.ErrnoException): string {
+  return REASONS[error.code ?? ''] ?? error.code ?? error.message;
+}

@@ -1,0 +1,79 @@
+import { measureText, type Show } from '../report/quantity.ts';
+import { UNACCEPTABLE_RULES } from '../runsheet/measures.ts';
+import type { AcceptEntry } from '../runsheet/types.ts';
+import { isAbove, isBelow, toFinding } from './rule.ts';
+import type { Finding, NotRun } from './types.ts';
+import { listText } from './words.ts';
+
+/**
+ * Marks the findings that the run sheet's `accept` entries take on, and adds `unmatched-accept` for entries that match
+ * nothing. An entry matches a finding of its rule that bears its name; it accepts it while the measured value lies on the
+ * safe side of `up_to`. Which side that is follows from the finding: a value below its limit must not fall below the
+ * ceiling, one above its limit must not rise above it.
+ *
+ * `ruleNames` are the rules of this check: an entry for a rule that another command runs is left alone.
+ */
+export function acceptFindings(
+  findings: readonly Finding[],
+  notRun: readonly NotRun[],
+  entries: readonly AcceptEntry[],
+  ruleNames: ReadonlySet<string>,
+  show: Show,
+): Finding[] {
+  if (entries.length === 0) return [...findings];
+  const byRule = new Map<string, AcceptEntry[]>();
+  for (const entry of entries) {
+    const list = byRule.get(entry.rule);
+    if (list === undefined) byRule.set(entry.rule, [entry]);
+    else list.push(entry);
+  }
+  const matched = new Set<AcceptEntry>();
+  const judged = findings.map((finding) => {
+    const named = (byRule.get(finding.rule) ?? []).filter(({ at }) => finding.names.includes(at));
+    if (named.length === 0 || UNACCEPTABLE_RULES.has(finding.rule)) return finding;
+    for (const entry of named) matched.add(entry);
+    const taken = named.find((entry) => objection(entry, finding, show) === null);
+    if (taken !== undefined) return { ...finding, accepted: taken };
+    return { ...finding, message: `${finding.message}; ${objection(named[0], finding, show)}` };
+  });
+  const unmatched = entries.filter((entry) => !matched.has(entry) && ruleNames.has(entry.rule));
+  return judged.concat(unmatched.map((entry) => unmatchedAccept(entry, findings, notRun)));
+}
+
+/** Why an entry that names the finding does not accept it; null when it does. */
+function objection(entry: AcceptEntry, finding: Finding, show: Show): string | null {
+  const { measured, limit, unit } = finding;
+  if (entry.upTo === null) return null;
+  const who = `${entry.by}, ${entry.on}`;
+  if (entry.upToUnit !== undefined && unit !== null && entry.upToUnit !== unit) {
+    const given = measureText(show, entry.upTo, entry.upToUnit, finding.rule);
+    return `not covered by the accepted ${given} (${who}), which is of another kind`;
+  }
+  const ceiling = `the accepted ${measureText(show, entry.upTo, unit, finding.rule)} (${who})`;
+  if (measured === null || limit === null) return `not covered by ${ceiling}: there is no value to compare`;
+  const isBeyond = measured < limit ? isBelow(measured, entry.upTo) : isAbove(measured, entry.upTo);
+  return isBeyond ? `beyond ${ceiling}` : null;
+}
+
+function unmatchedAccept(
+  { rule, at, line }: AcceptEntry,
+  findings: readonly Finding[],
+  notRun: readonly NotRun[],
+): Finding {
+  const skipped = notRun.find((entry) => entry.rule === rule);
+  const elsewhere = [
+    ...new Set(findings.filter((finding) => finding.rule === rule).flatMap(({ names }) => names)),
+  ];
+  const reason =
+    skipped !== undefined
+      ? `the rule was not run: ${skipped.why}`
+      : elsewhere.length === 0
+        ? `there is no ${rule} finding`
+        : `${rule} findings are at ${listText(elsewhere, 8)}`;
+  return toFinding('unmatched-accept', 'caution', {
+    message: `the accept entry in line ${line} of the run sheet, ${rule} at ${at}, matches no finding; ${reason}`,
+    fix: 'take the entry out of the run sheet, or correct its rule or its name',
+    at: null,
+    names: [at],
+  });
+}

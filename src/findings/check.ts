@@ -1,0 +1,78 @@
+import { acceptFindings } from './accept.ts';
+import type { FindingContext } from './context.ts';
+import type { Rule } from './rule.ts';
+import { RULES } from './rules.ts';
+import type { Finding, FindingReport, NotRun, Severity } from './types.ts';
+import { showFor } from './words.ts';
+
+/**
+ * Runs every rule on a chip, marks what the run sheet accepts, and gives the verdict: `ready` when no blocker is left that
+ * nobody accepted.
+ *
+ * Cost: linear in pieces, reaches and near pairs, but for sorting the findings.
+ */
+export function findAll(context: FindingContext, rules: readonly Rule[] = RULES): FindingReport {
+  const raw: Finding[] = [];
+  const skipped: NotRun[] = [];
+  for (const rule of rules) {
+    const outcome = rule.run(context);
+    for (const finding of outcome.findings) raw.push(finding);
+    for (const entry of outcome.notRun) skipped.push(entry);
+  }
+  const notRun = onePerRule(skipped);
+  const ruleNames = new Set(rules.flatMap(({ names }) => names));
+  const findings = acceptFindings(raw, notRun, context.chip.accept, ruleNames, showFor(context)).sort(
+    byUrgency,
+  );
+  const open = findings.filter(({ accepted }) => accepted === null);
+  const blockers = countOf(open, 'blocker');
+  return {
+    findings,
+    notRun,
+    verdict: blockers === 0 ? 'ready' : 'hold',
+    counts: {
+      blockers,
+      cautions: countOf(open, 'caution'),
+      notes: countOf(open, 'note'),
+      accepted: findings.length - open.length,
+      rulesNotRun: notRun.length,
+    },
+  };
+}
+
+/** One line per rule, with all its reasons, by rule name. */
+function onePerRule(skipped: readonly NotRun[]): NotRun[] {
+  const reasons = new Map<string, Set<string>>();
+  for (const { rule, why } of skipped) reasons.set(rule, (reasons.get(rule) ?? new Set()).add(why));
+  return [...reasons]
+    .map(([rule, whys]) => ({ rule, why: [...whys].join('; ') }))
+    .sort((a, b) => compareText(a.rule, b.rule));
+}
+
+const URGENCY: Readonly<Record<Severity, number>> = { blocker: 0, caution: 1, note: 2 };
+
+/** Blockers first; then by rule and place, then by name, so that one input gives one order. */
+function byUrgency(a: Finding, b: Finding): number {
+  return (
+    URGENCY[a.severity] - URGENCY[b.severity] ||
+    compareText(a.rule, b.rule) ||
+    compareNumber(a.xMm, b.xMm) ||
+    compareNumber(a.yMm, b.yMm) ||
+    compareText(a.names.join('\n'), b.names.join('\n')) ||
+    compareText(a.message, b.message)
+  );
+}
+
+function compareText(a: string, b: string): number {
+  return a < b ? -1 : a > b ? 1 : 0;
+}
+
+/** What has a place comes before what has none. */
+function compareNumber(a: number | null, b: number | null): number {
+  if (a === null || b === null) return (a === null ? 1 : 0) - (b === null ? 1 : 0);
+  return a - b;
+}
+
+function countOf(findings: readonly Finding[], severity: Severity): number {
+  return findings.filter((finding) => finding.severity === severity).length;
+}

@@ -1,0 +1,201 @@
+import type { Chip } from '../chip/types.ts';
+import { endsAtVertex, type Pieces, startsAtVertex } from '../geometry/pieces.ts';
+import { type Closest, closestPoints, type Line, nearer } from './closest.ts';
+
+/**
+ * The painted stroke, caps included: what is etched. Piece by piece it is a rectangle along the piece and a disc at each
+ * inner vertex and round cap; butt caps end square, square caps half a width further on.
+ */
+
+/** A line with all that lies within a radius of it; an area when `filled` holds its corners. */
+interface Part {
+  readonly lines: readonly Line[];
+  readonly radius: number;
+  /** Corners of a filled four-sided area whose sides `lines` are; null for a line. */
+  readonly corners: readonly (readonly [number, number])[] | null;
+}
+
+/**
+ * Material between the painted areas of two pieces (mm), and the two wall points that face each other there. Where the
+ * areas overlap it is negative, by how far: the distance of the centrelines less both halves.
+ */
+export function gapBetween(chip: Chip, pieces: Pieces, i: number, j: number): Closest {
+  let best: Closest | null = null;
+  for (const one of partsOf(chip, pieces, i)) {
+    for (const two of partsOf(chip, pieces, j)) {
+      const gap = gapOfParts(one, two);
+      best = best === null ? gap : nearer(best, gap);
+    }
+  }
+  if (best !== null && best.distanceMm > 0) return best;
+  const overlap = closestPoints(lineOf(pieces, i), lineOf(pieces, j));
+  return { ...overlap, distanceMm: Math.min(0, overlap.distanceMm - pieces.half[i] - pieces.half[j]) };
+}
+
+/** Material between the painted area of a piece and a round hole (mm); negative where they overlap. */
+export function gapToHole(
+  chip: Chip,
+  pieces: Pieces,
+  i: number,
+  hole: { readonly xMm: number; readonly yMm: number; readonly radiusMm: number },
+): Closest {
+  return gapToPart(chip, pieces, i, {
+    lines: [[hole.xMm, hole.yMm, hole.xMm, hole.yMm]],
+    radius: hole.radiusMm,
+    corners: null,
+  });
+}
+
+/** Material between the painted area of a piece and the painted end (its face, or its round cap) of a channel (mm). */
+export function gapToEnd(chip: Chip, pieces: Pieces, i: number, end: PaintedEnd): Closest {
+  return gapToPart(chip, pieces, i, { lines: [end.face], radius: end.radius, corners: null });
+}
+
+export function gapOfEnds(one: PaintedEnd, two: PaintedEnd): Closest {
+  return gapOfParts(
+    { lines: [one.face], radius: one.radius, corners: null },
+    { lines: [two.face], radius: two.radius, corners: null },
+  );
+}
+
+export function gapOfEndToHole(
+  end: PaintedEnd,
+  hole: { readonly xMm: number; readonly yMm: number; readonly radiusMm: number },
+): Closest {
+  return gapOfParts(
+    { lines: [end.face], radius: end.radius, corners: null },
+    { lines: [[hole.xMm, hole.yMm, hole.xMm, hole.yMm]], radius: hole.radiusMm, corners: null },
+  );
+}
+
+/** What a channel's end paints: a straight face across it, or (radius above 0) a disc round the end point. */
+export interface PaintedEnd {
+  readonly face: Line;
+  readonly radius: number;
+}
+
+/** The painted end at a point with unit direction out of the channel. */
+export function paintedEnd(
+  x: number,
+  y: number,
+  outX: number,
+  outY: number,
+  half: number,
+  linecap: 'butt' | 'round' | 'square',
+): PaintedEnd {
+  if (linecap === 'round') return { face: [x, y, x, y], radius: half };
+  const beyond = linecap === 'square' ? half : 0;
+  const cx = x + outX * beyond;
+  const cy = y + outY * beyond;
+  return { face: [cx - outY * half, cy + outX * half, cx + outY * half, cy - outX * half], radius: 0 };
+}
+
+/** True where a piece has an end that is cut flat, so that its painted area is not just all within half a width of it. */
+export function hasFlatEnd(chip: Chip, pieces: Pieces, i: number): boolean {
+  if (chip.channels[pieces.channel[i]].linecap === 'round') return false;
+  return !startsAtVertex(pieces, i) || !endsAtVertex(pieces, i);
+}
+
+/** Straight sides (with the radius that goes round them) of the painted area of a piece. */
+export function outlineOf(chip: Chip, pieces: Pieces, i: number): { lines: Line[]; radii: number[] } {
+  const lines: Line[] = [];
+  const radii: number[] = [];
+  for (const part of partsOf(chip, pieces, i)) {
+    for (const line of part.lines) {
+      lines.push(line);
+      radii.push(part.radius);
+    }
+  }
+  return { lines, radii };
+}
+
+export function lineOf(pieces: Pieces, i: number): Line {
+  return [pieces.x1[i], pieces.y1[i], pieces.x2[i], pieces.y2[i]];
+}
+
+function gapToPart(chip: Chip, pieces: Pieces, i: number, other: Part): Closest {
+  let best: Closest | null = null;
+  for (const part of partsOf(chip, pieces, i)) {
+    const gap = gapOfParts(part, other);
+    best = best === null ? gap : nearer(best, gap);
+  }
+  // partsOf never gives an empty list.
+  return best as Closest;
+}
+
+function partsOf(chip: Chip, pieces: Pieces, i: number): Part[] {
+  const { linecap } = chip.channels[pieces.channel[i]];
+  const half = pieces.half[i];
+  const flatStart = linecap !== 'round' && !startsAtVertex(pieces, i);
+  const flatEnd = linecap !== 'round' && !endsAtVertex(pieces, i);
+  if (!flatStart && !flatEnd) return [{ lines: [lineOf(pieces, i)], radius: half, corners: null }];
+  const ux = (pieces.x2[i] - pieces.x1[i]) / pieces.length[i];
+  const uy = (pieces.y2[i] - pieces.y1[i]) / pieces.length[i];
+  const beyond = linecap === 'square' ? half : 0;
+  const ax = pieces.x1[i] - (flatStart ? ux * beyond : 0);
+  const ay = pieces.y1[i] - (flatStart ? uy * beyond : 0);
+  const bx = pieces.x2[i] + (flatEnd ? ux * beyond : 0);
+  const by = pieces.y2[i] + (flatEnd ? uy * beyond : 0);
+  const nx = -uy * half;
+  const ny = ux * half;
+  const corners = [
+    [ax + nx, ay + ny],
+    [bx + nx, by + ny],
+    [bx - nx, by - ny],
+    [ax - nx, ay - ny],
+  ] as const;
+  const parts: Part[] = [
+    {
+      lines: corners.map(([x, y], k) => [x, y, ...corners[(k + 1) % 4]]),
+      radius: 0,
+      corners,
+    },
+  ];
+  if (!flatStart) parts.push(disc(pieces.x1[i], pieces.y1[i], half));
+  if (!flatEnd) parts.push(disc(pieces.x2[i], pieces.y2[i], half));
+  return parts;
+}
+
+function disc(x: number, y: number, radius: number): Part {
+  return { lines: [[x, y, x, y]], radius, corners: null };
+}
+
+function gapOfParts(one: Part, two: Part): Closest {
+  let best: Closest | null = null;
+  for (const a of one.lines) {
+    for (const b of two.lines) {
+      const gap = closestPoints(a, b);
+      best = best === null ? gap : nearer(best, gap);
+    }
+  }
+  // Every part has a line.
+  const closest = best as Closest;
+  if (contains(one, two.lines[0]) || contains(two, one.lines[0])) {
+    return { ...closest, distanceMm: -closest.distanceMm - one.radius - two.radius };
+  }
+  const { distanceMm: d, x1, y1, x2, y2 } = closest;
+  if (d === 0) return { ...closest, distanceMm: -one.radius - two.radius };
+  const ux = (x2 - x1) / d;
+  const uy = (y2 - y1) / d;
+  return {
+    distanceMm: d - one.radius - two.radius,
+    x1: x1 + ux * one.radius,
+    y1: y1 + uy * one.radius,
+    x2: x2 - ux * two.radius,
+    y2: y2 - uy * two.radius,
+  };
+}
+
+function contains({ corners }: Part, [x, y]: Line): boolean {
+  if (corners === null) return false;
+  let side = 0;
+  for (let k = 0; k < 4; k++) {
+    const [ax, ay] = corners[k];
+    const [bx, by] = corners[(k + 1) % 4];
+    const cross = (bx - ax) * (y - ay) - (by - ay) * (x - ax);
+    if (cross === 0) continue;
+    if (side !== 0 && Math.sign(cross) !== side) return false;
+    side = Math.sign(cross);
+  }
+  return true;
+}

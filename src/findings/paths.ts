@@ -1,0 +1,246 @@
+import { pieceAt } from '../geometry/pieces.ts';
+import type { Network } from '../network/types.ts';
+import { oncePerContext } from './context.ts';
+
+/**
+ * Distances along the channels: how far the fluid has to go from one place on a centreline to another, over whatever
+ * nodes join them. Open wells take no length.
+ *
+ * Vertices are the network's nodes and the places where two arcs of one reach go on in each other. Only short distances
+ * are asked for, so each question is a search of a small neighbourhood (E. W. Dijkstra, Numer. Math. 1 (1959) 269), kept
+ * for the next one.
+ */
+export class ChannelPaths {
+  private readonly network: Network;
+  /** Vertex at each arc's start and end: 2a, 2a + 1. */
+  readonly sideVertex: Int32Array;
+  readonly vertexCount: number;
+  /** Sides of vertex v are sides[firstSide[v]] … sides[firstSide[v + 1] − 1], as 2·arc + (1 at the arc's end). */
+  readonly firstSide: Int32Array;
+  readonly sides: Int32Array;
+  private readonly firstWell: Int32Array;
+  private readonly wellFrom: Float64Array;
+  private readonly wellTo: Float64Array;
+  private readonly known = new Map<
+    number,
+    { readonly withinMm: number; readonly reached: Map<number, number> }
+  >();
+
+  constructor(network: Network) {
+    this.network = network;
+    const { trace } = network;
+    const { sideVertex, vertexCount } = toVertices(network);
+    this.sideVertex = sideVertex;
+    this.vertexCount = vertexCount;
+    this.firstSide = new Int32Array(vertexCount + 1);
+    for (const vertex of sideVertex) this.firstSide[vertex + 1]++;
+    for (let v = 0; v < vertexCount; v++) this.firstSide[v + 1] += this.firstSide[v];
+    const fill = this.firstSide.slice();
+    this.sides = new Int32Array(2 * trace.arcCount);
+    for (let side = 0; side < 2 * trace.arcCount; side++) this.sides[fill[sideVertex[side]]++] = side;
+
+    const n = trace.near.pieces.centrelineCount;
+    const places: number[] = [];
+    this.firstWell = new Int32Array(n + 1);
+    for (let node = 0; node < network.nodeCount; node++) {
+      if (network.nodePort[node] < 0) continue;
+      for (let k = trace.firstPlace[node]; k < trace.firstPlace[node + 1]; k++) {
+        places.push(k);
+        this.firstWell[trace.placeCentreline[k] + 1]++;
+      }
+    }
+    for (let c = 0; c < n; c++) this.firstWell[c + 1] += this.firstWell[c];
+    const next = this.firstWell.slice();
+    this.wellFrom = new Float64Array(places.length);
+    this.wellTo = new Float64Array(places.length);
+    for (const k of places) {
+      const at = next[trace.placeCentreline[k]]++;
+      this.wellFrom[at] = trace.placeFrom[k];
+      this.wellTo[at] = trace.placeTo[k];
+    }
+  }
+
+  /** Whether position s of a centreline lies in an open well. */
+  isInWell(centreline: number, s: number): boolean {
+    for (let k = this.firstWell[centreline]; k < this.firstWell[centreline + 1]; k++) {
+      if (s > this.wellFrom[k] && s < this.wellTo[k]) return true;
+    }
+    return false;
+  }
+
+  /** The arc that holds position s, or the one nearest to it; −1 when the centreline has none (all of it open well). */
+  arcAt(centreline: number, s: number): number {
+    const { firstArc, arcFrom, arcTo } = this.network.trace;
+    let low = firstArc[centreline];
+    let high = firstArc[centreline + 1] - 1;
+    if (high < low) return -1;
+    const first = low;
+    while (low < high) {
+      const middle = (low + high + 1) >> 1;
+      if (arcFrom[middle] <= s) low = middle;
+      else high = middle - 1;
+    }
+    const nextArc = low + 1;
+    if (s > arcTo[low] && nextArc < firstArc[centreline + 1] && arcFrom[nextArc] - s < s - arcTo[low]) {
+      return nextArc;
+    }
+    return Math.max(first, low);
+  }
+
+  /** Adds the positions of arc ends strictly between two positions of a centreline. */
+  addBounds(into: number[], centreline: number, low: number, high: number): void {
+    const { firstArc, arcFrom, arcTo } = this.network.trace;
+    const start = this.arcAt(centreline, low);
+    if (start < 0) return;
+    for (let a = Math.max(firstArc[centreline], start - 1); a < firstArc[centreline + 1]; a++) {
+      if (arcFrom[a] >= high) return;
+      if (arcFrom[a] > low) into.push(arcFrom[a]);
+      if (arcTo[a] > low && arcTo[a] < high) into.push(arcTo[a]);
+    }
+  }
+
+  /** The ways from one arc to another, none longer than withinMm between the arcs' ends. */
+  routes(arcA: number, arcB: number, withinMm: number): Route[] {
+    const { arcFrom, arcTo } = this.network.trace;
+    const routes: Route[] = [];
+    if (arcA === arcB) routes.push({ kind: 'along' });
+    for (const sideA of [0, 1]) {
+      for (const sideB of [0, 1]) {
+        const vertexA = this.sideVertex[2 * arcA + sideA];
+        const vertexB = this.sideVertex[2 * arcB + sideB];
+        const lengthMm = this.between(vertexA, vertexB, withinMm);
+        if (lengthMm > withinMm) continue;
+        routes.push({
+          kind: 'over',
+          leaveAt: sideA === 0 ? arcFrom[arcA] : arcTo[arcA],
+          enterAt: sideB === 0 ? arcFrom[arcB] : arcTo[arcB],
+          lengthMm,
+          vertex: vertexA === vertexB ? vertexA : -1,
+        });
+      }
+    }
+    return routes;
+  }
+
+  /** Shortest way between two vertices (mm); Infinity when it is longer than withinMm. */
+  between(from: number, to: number, withinMm: number): number {
+    if (from === to) return 0;
+    let entry = this.known.get(from);
+    if (entry === undefined || entry.withinMm < withinMm) {
+      entry = { withinMm, reached: this.search(from, withinMm) };
+      this.known.set(from, entry);
+    }
+    return entry.reached.get(to) ?? Number.POSITIVE_INFINITY;
+  }
+
+  private search(from: number, withinMm: number): Map<number, number> {
+    const { arcFrom, arcTo } = this.network.trace;
+    const settled = new Map<number, number>();
+    const open = new Map<number, number>([[from, 0]]);
+    while (open.size > 0 && settled.size < MOST_VERTICES) {
+      let vertex = -1;
+      let least = Number.POSITIVE_INFINITY;
+      for (const [v, d] of open) {
+        if (d < least) {
+          vertex = v;
+          least = d;
+        }
+      }
+      open.delete(vertex);
+      settled.set(vertex, least);
+      for (let k = this.firstSide[vertex]; k < this.firstSide[vertex + 1]; k++) {
+        const side = this.sides[k];
+        const arc = side >> 1;
+        const other = this.sideVertex[side ^ 1];
+        const distance = least + arcTo[arc] - arcFrom[arc];
+        if (distance > withinMm || settled.has(other)) continue;
+        if (distance < (open.get(other) ?? Number.POSITIVE_INFINITY)) open.set(other, distance);
+      }
+    }
+    return settled;
+  }
+}
+
+/**
+ * A way between two arcs: along the arc itself, or over a node or several. The whole way from s to t is |s − t|, or
+ * |s − leaveAt| + lengthMm + |t − enterAt|.
+ */
+export type Route =
+  | { readonly kind: 'along' }
+  | {
+      readonly kind: 'over';
+      readonly leaveAt: number;
+      readonly enterAt: number;
+      readonly lengthMm: number;
+      /** The one vertex that the way goes over, −1 when it goes over several. */
+      readonly vertex: number;
+    };
+
+export function routeLength(route: Route, s: number, t: number): number {
+  return route.kind === 'along'
+    ? Math.abs(s - t)
+    : Math.abs(s - route.leaveAt) + route.lengthMm + Math.abs(t - route.enterAt);
+}
+
+export const channelPaths = oncePerContext(({ network }) => new ChannelPaths(network));
+
+/** Point of a centreline at position s; beyond a drawn end straight on. Returns [x, y] in mm. */
+export function pointOn({ trace }: Network, centreline: number, s: number): readonly [number, number] {
+  const { pieces } = trace.near;
+  const i = pieceAt(pieces, centreline, s);
+  const t = (s - pieces.start[i]) / pieces.length[i];
+  return [pieces.x1[i] + t * (pieces.x2[i] - pieces.x1[i]), pieces.y1[i] + t * (pieces.y2[i] - pieces.y1[i])];
+}
+
+/** A neighbourhood with more vertices than this within a few widths is no drawing that anyone could make; bounds the time. */
+const MOST_VERTICES = 512;
+
+/** Nodes, then one more vertex for each place where two arcs of one reach go on in each other. */
+function toVertices(network: Network): { sideVertex: Int32Array; vertexCount: number } {
+  const { trace } = network;
+  const sideVertex = new Int32Array(2 * trace.arcCount);
+  let vertexCount = network.nodeCount;
+  const loose = new Map<number, number[]>();
+  for (let a = 0; a < trace.arcCount; a++) {
+    sideVertex[2 * a] = trace.arcNodeFrom[a];
+    sideVertex[2 * a + 1] = trace.arcNodeTo[a];
+    for (const side of [2 * a, 2 * a + 1]) {
+      if (sideVertex[side] >= 0) continue;
+      const list = loose.get(trace.arcReach[a]);
+      if (list === undefined) loose.set(trace.arcReach[a], [side]);
+      else list.push(side);
+    }
+  }
+  for (const sides of loose.values()) {
+    const points = sides.map((side) => sidePoint(network, side));
+    const taken = new Uint8Array(sides.length);
+    for (let k = 0; k < sides.length; k++) {
+      if (taken[k] === 1) continue;
+      taken[k] = 1;
+      sideVertex[sides[k]] = vertexCount;
+      let partner = -1;
+      let least = Number.POSITIVE_INFINITY;
+      for (let m = k + 1; m < sides.length; m++) {
+        if (taken[m] === 1) continue;
+        const distance = Math.hypot(points[m][0] - points[k][0], points[m][1] - points[k][1]);
+        if (distance < least) {
+          least = distance;
+          partner = m;
+        }
+      }
+      if (partner >= 0) {
+        taken[partner] = 1;
+        sideVertex[sides[partner]] = vertexCount;
+      }
+      vertexCount++;
+    }
+  }
+  return { sideVertex, vertexCount };
+}
+
+/** Where an arc's start (even side) or end (odd side) lies. */
+export function sidePoint(network: Network, side: number): readonly [number, number] {
+  const { trace } = network;
+  const arc = side >> 1;
+  return pointOn(network, trace.arcCentreline[arc], (side & 1) === 0 ? trace.arcFrom[arc] : trace.arcTo[arc]);
+}

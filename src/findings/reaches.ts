@@ -1,0 +1,112 @@
+import type { Network } from '../network/types.ts';
+import { type FindingContext, oncePerContext } from './context.ts';
+
+/** Reaches of each channel in drawn order: those of channel c are of[first[c]] … of[first[c + 1] − 1]. */
+interface ChannelReaches {
+  readonly first: Int32Array;
+  readonly of: Int32Array;
+}
+
+const byChannel = oncePerContext(({ network, chip }): ChannelReaches => {
+  const first = new Int32Array(chip.channels.length + 1);
+  for (let c = 0; c < chip.channels.length; c++) first[c + 1] = first[c] + network.channelReachCount[c];
+  const of = new Int32Array(network.reachCount);
+  for (let r = 0; r < network.reachCount; r++)
+    of[first[network.reachChannel[r]] + network.reachNumber[r] - 1] = r;
+  return { first, of };
+});
+
+/** The reaches of one channel, in drawn order. */
+export function reachesOf(context: FindingContext, channel: number): Int32Array {
+  const { first, of } = byChannel(context);
+  return of.subarray(first[channel], first[channel + 1]);
+}
+
+/** The worst reach of a channel by some measure, and how many reaches are at fault. */
+export interface Worst<T> {
+  readonly reach: number;
+  readonly fault: T;
+  readonly faulty: readonly number[];
+}
+
+/**
+ * Looks at every reach of a channel: `look` gives what is wrong there, null for nothing; `badness` says which fault is the
+ * worst (of equals the first). Null when nothing is wrong: one finding per channel, at its worst place.
+ */
+export function worstReach<T>(
+  reaches: Iterable<number>,
+  look: (reach: number) => T | null,
+  badness: (fault: T) => number,
+): Worst<T> | null {
+  let worst: { reach: number; fault: T } | null = null;
+  let most = 0;
+  const faulty: number[] = [];
+  for (const reach of reaches) {
+    const fault = look(reach);
+    if (fault === null) continue;
+    faulty.push(reach);
+    const bad = badness(fault);
+    if (worst === null || bad > most * (1 + SAME)) {
+      worst = { reach, fault };
+      most = bad;
+    }
+  }
+  return worst === null ? null : { ...worst, faulty };
+}
+
+/** Faults that differ by rounding only are equal, so that a turned drawing points at the same place. */
+const SAME = 1e-9;
+
+/** The worst reach first, then the channel, then the other reaches at fault. */
+export function reachNames({ network, chip }: FindingContext, { reach, faulty }: Worst<unknown>): string[] {
+  const channel = chip.channels[network.reachChannel[reach]].name;
+  const others = faulty.filter((other) => other !== reach).map(network.reachName);
+  return [...new Set([network.reachName(reach), channel, ...others])];
+}
+
+/** " (and in 3 more reaches of lane)" for a message, nothing when there are none. */
+export function othersText({ network, chip }: FindingContext, { reach, faulty }: Worst<unknown>): string {
+  const others = faulty.length - 1;
+  if (others === 0) return '';
+  const { name } = chip.channels[network.reachChannel[reach]];
+  return ` (and in ${others} more ${others === 1 ? 'reach' : 'reaches'} of ${name})`;
+}
+
+/** Middle of a reach along its centreline, mm. */
+export function middleOfReach(
+  network: Network,
+  reach: number,
+): { readonly xMm: number; readonly yMm: number } {
+  const first = network.firstSegment[reach];
+  const end = network.firstSegment[reach + 1];
+  let total = 0;
+  for (let s = first; s < end; s++) total += lengthOf(network, s);
+  return alongReach(network, reach, total / 2);
+}
+
+/** The place `alongMm` from the reach's first node, mm; clamped to its ends. */
+export function alongReach(
+  network: Network,
+  reach: number,
+  alongMm: number,
+): { readonly xMm: number; readonly yMm: number } {
+  const end = network.firstSegment[reach + 1];
+  let left = alongMm;
+  for (let s = network.firstSegment[reach]; s < end; s++) {
+    const length = lengthOf(network, s);
+    if (left <= length || s === end - 1) {
+      const t = length === 0 ? 0 : Math.max(0, Math.min(1, left / length));
+      return {
+        xMm: network.segmentX1[s] + t * (network.segmentX2[s] - network.segmentX1[s]),
+        yMm: network.segmentY1[s] + t * (network.segmentY2[s] - network.segmentY1[s]),
+      };
+    }
+    left -= length;
+  }
+  const node = network.reachFrom[reach];
+  return { xMm: network.nodeX[node], yMm: network.nodeY[node] };
+}
+
+function lengthOf(network: Network, s: number): number {
+  return Math.hypot(network.segmentX2[s] - network.segmentX1[s], network.segmentY2[s] - network.segmentY1[s]);
+}

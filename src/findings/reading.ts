@@ -1,0 +1,154 @@
+import type { ReadingFault } from '../chip/types.ts';
+import { middleOfChannel } from './centrelines.ts';
+import type { FindingContext } from './context.ts';
+import { found, type Rule, toFinding } from './rule.ts';
+import type { Finding } from './types.ts';
+import { countText, distanceText, listText } from './words.ts';
+
+/** What the drawing or the run sheet left open, or said in a way that cannot be read for sure. */
+export const readingRules: readonly Rule[] = [
+  {
+    names: ['unsized-stroke'],
+    run: ({ chip }) => found(chip.faults.filter(isOf('unsized-stroke')).map(unsizedStroke)),
+  },
+  {
+    names: ['filled-outline'],
+    run: ({ chip }) => found(chip.faults.filter(isOf('filled-outline')).map(filledOutline)),
+  },
+  {
+    names: ['assumed-scale'],
+    run: ({ chip }) => found(chip.faults.filter(isOf('assumed-scale')).map(assumedScale)),
+  },
+  {
+    names: ['missing-depth'],
+    run: ({ chip }) => found(missingDepths(chip.faults.filter(isOf('missing-depth')))),
+  },
+  {
+    names: ['disguised-stroke'],
+    run: ({ chip }) => found(chip.faults.filter(isOf('disguised-stroke')).map(disguisedStroke)),
+  },
+  { names: ['unset-port'], run: (context) => found(unsetPorts(context)) },
+  { names: ['default-depth'], run: (context) => found(defaultDepths(context)) },
+  { names: ['ignored-shapes'], run: (context) => found(ignoredShapes(context)) },
+];
+
+type FaultOf<K extends ReadingFault['kind']> = Extract<ReadingFault, { readonly kind: K }>;
+
+function isOf<K extends ReadingFault['kind']>(kind: K) {
+  return (fault: ReadingFault): fault is FaultOf<K> => fault.kind === kind;
+}
+
+function unsizedStroke({ name, xMm, yMm }: FaultOf<'unsized-stroke'>): Finding {
+  return toFinding('unsized-stroke', 'blocker', {
+    message: `the stroke of ${name} is stretched or skewed by its transform, so it has no one width; the channel was left out`,
+    fix: `take the uneven scaling off ${name} or its group (apply the transform to the path) and set its stroke width again`,
+    at: { xMm, yMm },
+    names: [name],
+  });
+}
+
+function filledOutline({ name, xMm, yMm, stroked }: FaultOf<'filled-outline'>): Finding {
+  const why = stroked ? 'stroked too' : 'a channel ends on it';
+  return toFinding('filled-outline', 'blocker', {
+    message: `${name} is drawn as a filled outline (${why}); only strokes along a centreline are channels, so it was left out`,
+    fix: `redraw ${name} as one line along its middle with its width as the stroke width, or name it under ignore: in the run sheet if it is no channel`,
+    at: { xMm, yMm },
+    names: [name],
+  });
+}
+
+function assumedScale({ reason }: FaultOf<'assumed-scale'>): Finding {
+  return toFinding('assumed-scale', 'blocker', {
+    message: `the drawing states no physical size (${reason}); it was read at 25.4/96 mm a unit, which is a guess`,
+    fix: 'give the drawing its width and height in mm, or write in the run sheet unit: 1 mm (what one drawing unit is) or size: [76 mm, 26 mm] (the sides of the chip edge)',
+    at: null,
+    names: [],
+  });
+}
+
+/** One finding per layer: the layer's depth is what is missing. */
+function missingDepths(faults: readonly FaultOf<'missing-depth'>[]): Finding[] {
+  const byLayer = new Map<string, FaultOf<'missing-depth'>[]>();
+  for (const fault of faults) {
+    const group = byLayer.get(fault.layer);
+    if (group === undefined) byLayer.set(fault.layer, [fault]);
+    else group.push(fault);
+  }
+  return [...byLayer].map(([layer, group]) => {
+    const [first] = group;
+    const channels = [...new Set(group.map(({ channel }) => channel))];
+    const who = `${listText(channels)} ${channels.length === 1 ? 'has' : 'have'} no depth`;
+    return toFinding('missing-depth', 'blocker', {
+      message:
+        layer === '' ? `${who} and no layer to take one from` : `${who}: layer ${layer} was given none`,
+      fix:
+        layer === ''
+          ? 'write depth: 50 um in the run sheet (with the depth that is etched)'
+          : `write in the run sheet layers: { ${layer}: { depth: 50 um } } (with the depth that is etched), or depth: for all layers`,
+      at: { xMm: first.xMm, yMm: first.yMm },
+      names: layer === '' ? channels : [...new Set([first.channel, layer, ...channels])],
+    });
+  });
+}
+
+function disguisedStroke({ channel, by, xMm, yMm }: FaultOf<'disguised-stroke'>): Finding {
+  return toFinding('disguised-stroke', 'caution', {
+    message: `${channel} carries ${by}, so it looks other than it is read: the whole stroke counts as etched`,
+    fix: `take ${by} off ${channel}, or take the stroke out of the drawing if it is not to be etched`,
+    at: { xMm, yMm },
+    names: [channel],
+  });
+}
+
+function unsetPorts({ chip }: FindingContext): Finding[] {
+  return chip.ports
+    .filter(({ condition }) => condition.kind === 'unset')
+    .map(({ name, drawnName, xMm, yMm, radiusMm }) =>
+      toFinding('unset-port', 'blocker', {
+        message: `port ${name} (${distanceText(2 * radiusMm)} hole) has no condition; it was computed as sealed`,
+        fix:
+          drawnName === null
+            ? 'give the circle a name in the drawing and its pressure, flow or head in the run sheet (or open, or sealed); name it under ignore: if it is no port'
+            : `write in the run sheet ports: { ${name}: { pressure: 10 kPa } } (or flow or head, or just open or sealed)`,
+        at: { xMm, yMm },
+        names: [name],
+      }),
+    );
+}
+
+/** Strokes in no layer have only the sheet's depth to take; a named layer may have been forgotten. */
+function defaultDepths({ chip }: FindingContext): Finding[] {
+  const firstOfLayer = new Map<number, (typeof chip.channels)[number]>();
+  for (const channel of chip.channels) {
+    if (channel.depthOrigin === 'default' && !firstOfLayer.has(channel.layer)) {
+      firstOfLayer.set(channel.layer, channel);
+    }
+  }
+  return [...firstOfLayer]
+    .filter(([layer]) => chip.layers[layer].name !== '')
+    .map(([layer, channel]) => {
+      const { name } = chip.layers[layer];
+      return toFinding('default-depth', 'note', {
+        message: `layer ${name} is not named in the run sheet and took its depth of ${distanceText(channel.depthMm)} for all layers`,
+        fix: `write layers: { ${name}: { depth: ${distanceText(channel.depthMm).replace('µ', 'u')} } } in the run sheet to say that this is meant`,
+        at: middleOfChannel(channel),
+        names: [name],
+      });
+    });
+}
+
+function ignoredShapes({ chip }: FindingContext): Finding[] {
+  const kinds = Object.entries(chip.ignored)
+    .filter(([, count]) => count > 0)
+    .sort(([a], [b]) => (a < b ? -1 : 1));
+  if (kinds.length === 0) return [];
+  const total = kinds.reduce((sum, [, count]) => sum + count, 0);
+  return [
+    toFinding('ignored-shapes', 'note', {
+      message: `${countText(total, 'drawn thing was', 'drawn things were')} not read as part of the chip: ${kinds.map(([kind, count]) => `${count} ${kind}`).join(', ')}`,
+      fix: 'check on the picture that no channel is missing',
+      at: null,
+      names: [],
+    }),
+  ];
+}

@@ -1,0 +1,46 @@
+import type { Sourced } from '../chip/types.ts';
+import { formatMm, formatNumber, type Show, showOf } from '../report/quantity.ts';
+import { type FindingContext, oncePerContext } from './context.ts';
+
+/** Numbers for messages, in the units that the run sheet's `show` asks for. */
+export const showFor: (context: FindingContext) => Show = oncePerContext(({ chip }) =>
+  showOf(chip.sheet?.show ?? null),
+);
+
+/** A distance across the drawing (mm) as people say it: "35 µm", "1.2 mm". */
+export function distanceText(mm: number): string {
+  if (Math.abs(mm) >= 1) return `${formatNumber(mm)} mm`;
+  return `${formatNumber(mm * 1e3)} µm`;
+}
+
+/** A move in the drawing (mm), rounded up to 1 µm so that doing it is enough: "0.031 mm". */
+export function moveText(mm: number): string {
+  return `${formatMm(Math.ceil(mm * 1e3 - 1e-6) / 1e3)} mm`;
+}
+
+/** A size in the drawing (mm), rounded down to 1 µm so that keeping to it is enough: "0.17 mm". */
+export function sizeAtMostText(mm: number): string {
+  return `${formatMm(Math.floor(mm * 1e3 + 1e-6) / 1e3)} mm`;
+}
+
+/** A place in the drawing: "(12.5, 3 mm)". */
+export function placeText(xMm: number, yMm: number): string {
+  return `(${formatMm(xMm)}, ${formatMm(yMm)} mm)`;
+}
+
+/** A limit with where it comes from, when that is not the run sheet: "20 µm (usual practice, no source)". */
+export function limitText(text: string, { origin }: Pick<Sourced<unknown>, 'origin'>): string {
+  return origin === 'run sheet' ? text : `${text} (${origin})`;
+}
+
+/** "a", "a and b", "a, b and c", "a, b, c and 9 more". */
+export function listText(names: readonly string[], most = 3): string {
+  if (names.length === 0) return 'nothing';
+  if (names.length === 1) return names[0];
+  if (names.length > most) return `${names.slice(0, most).join(', ')} and ${names.length - most} more`;
+  return `${names.slice(0, -1).join(', ')} and ${names[names.length - 1]}`;
+}
+
+export function countText(count: number, one: string, many = `${one}s`): string {
+  return `${count} ${count === 1 ? one : many}`;
+}

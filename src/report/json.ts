@@ -1,0 +1,114 @@
+import type { CasesResult, Result, SingleResult } from './result.ts';
+
+/** How deep the JSON goes: `ports` has no nodes, reaches and segments; `reaches` no segments. */
+export type Detail = 'ports' | 'reaches' | 'segments';
+
+/**
+ * The result as JSON text in chunks of about 64 kB, keys in the order of the contract, one table row per line, a newline at the end.
+ * Throws a RangeError that names the key when a number is NaN or infinite.
+ */
+export function* writeJson(result: Result, detail: Detail = 'segments'): Generator<string> {
+  let pending = '';
+  for (const piece of documentPieces(result, detail)) {
+    pending += piece;
+    if (pending.length >= 65_536) {
+      yield pending;
+      pending = '';
+    }
+  }
+  yield `${pending}\n`;
+}
+
+function* documentPieces(result: Result, detail: Detail): Generator<string> {
+  if (!('cases' in result)) {
+    yield* memberPieces(result, detail, '');
+    return;
+  }
+  yield* headPieces(result);
+  const indent = '    ';
+  let separator = ',\n  "cases": [\n';
+  for (const one of result.cases) {
+    yield `${separator}${indent}`;
+    yield* memberPieces(one, detail, indent);
+    separator = ',\n';
+  }
+  yield '\n  ]\n}';
+}
+
+function* headPieces(result: CasesResult): Generator<string> {
+  const { cases: _, ...head } = result;
+  let separator = '{\n';
+  for (const [key, value] of Object.entries(head)) {
+    yield `${separator}  ${JSON.stringify(key)}: ${jsonValue(value, key)}`;
+    separator = ',\n';
+  }
+}
+
+/** Top-level keys whose arrays are written one row per line. */
+const TABLES = new Set(['ports', 'nodes', 'reaches', 'segments', 'findings', 'not_run']);
+const LEFT_OUT: Record<Detail, ReadonlySet<string>> = {
+  ports: new Set(['nodes', 'reaches', 'segments']),
+  reaches: new Set(['segments']),
+  segments: new Set(),
+};
+
+function* memberPieces(
+  part: Omit<SingleResult, 'layout' | 'tool' | 'run_sheet'>,
+  detail: Detail,
+  indent: string,
+): Generator<string> {
+  let separator = '{\n';
+  for (const [key, value] of Object.entries(part)) {
+    if (LEFT_OUT[detail].has(key) || value === undefined) continue;
+    yield `${separator}${indent}  ${JSON.stringify(key)}: `;
+    separator = ',\n';
+    if (TABLES.has(key)) {
+      // every key in TABLES holds rows: an array or lazy Rows of plain objects
+      yield* tablePieces(value as Iterable<unknown>, key, indent);
+    } else {
+      yield jsonValue(value, key);
+    }
+  }
+  yield `\n${indent}}`;
+}
+
+function* tablePieces(table: Iterable<unknown>, key: string, indent: string): Generator<string> {
+  let separator = '[\n';
+  for (const row of table) {
+    yield `${separator}${indent}    ${jsonValue(row, key)}`;
+    separator = ',\n';
+  }
+  yield separator === '[\n' ? '[]' : `\n${indent}  ]`;
+}
+
+/** JSON of one value without whitespace; −0 is written as 0. */
+function jsonValue(value: unknown, path: string): string {
+  switch (typeof value) {
+    case 'number':
+      if (!Number.isFinite(value))
+        throw new RangeError(`${path} is ${value}: a result holds finite numbers or null`);
+      return value === 0 ? '0' : String(value);
+    case 'string':
+      return JSON.stringify(value);
+    case 'boolean':
+      return value ? 'true' : 'false';
+    case 'object':
+      if (value === null) return 'null';
+      return Array.isArray(value) ? jsonArray(value, path) : jsonObject(value, path);
+    default:
+      throw new TypeError(`${path} is a ${typeof value}: JSON can't hold it`);
+  }
+}
+
+function jsonArray(values: readonly unknown[], path: string): string {
+  return `[${values.map((value, i) => jsonValue(value, `${path}[${i}]`)).join(',')}]`;
+}
+
+function jsonObject(object: object, path: string): string {
+  let text = '';
+  for (const [key, value] of Object.entries(object)) {
+    if (value === undefined) continue;
+    text += `${text === '' ? '' : ','}${JSON.stringify(key)}:${jsonValue(value, `${path}.${key}`)}`;
+  }
+  return `{${text}}`;
+}

@@ -1,0 +1,82 @@
+import type { Report } from '../report.ts';
+import { verdictLine } from '../verdict-line.ts';
+import { writeCautions } from './cautions.ts';
+import { isoDate, pageContext } from './context.ts';
+import { writeFindings } from './findings.ts';
+import { writeFrontPage } from './front-page.ts';
+import { writeHandCheck } from './hand-check.ts';
+import { writeHoles } from './holes.ts';
+import { writeMaps } from './maps.ts';
+import { writeModel } from './model.ts';
+import { type Fonts, Paper, type PaperSize } from './paper.ts';
+import { writeReaches } from './reaches.ts';
+import { writeRunSheet } from './run-sheet.ts';
+import { writeSegments } from './segments.ts';
+
+export interface PdfOptions {
+  /** The embedded font's files (TrueType), with every glyph that the pages use. */
+  readonly fonts: Fonts;
+  readonly paper: PaperSize;
+  /** The one clock: printed, and the document's creation date. */
+  readonly date: Date;
+}
+
+/**
+ * The document to sign: PDF 1.7, tagged, one embedded font. The same report, options and Node version give the same bytes.
+ * Time and size are bounded: of large networks the tables hold the first part and say where the rest is.
+ */
+export function writePdf(report: Report, options: PdfOptions): Promise<Uint8Array> {
+  const { result, cases } = report;
+  const { sheet } = cases[0].network.chip;
+  const creator = `${result.tool.name} ${result.tool.version}`;
+  const title = sheet?.title ?? result.layout.file;
+  const paper = new Paper({ ...options, title, subject: `Check of ${result.layout.file}`, creator });
+  const contexts = cases.map((one) => pageContext(paper, report, one, options.date));
+  for (const context of contexts) {
+    writeFrontPage(context);
+    writeFindings(context);
+    writeMaps(context);
+    writeReaches(context);
+    writeSegments(context);
+    writeHandCheck(context);
+  }
+  const [first] = contexts;
+  writeHoles(first);
+  writeModel(first);
+  writeCautions(first);
+  writeRunSheet(first);
+  return paper.finish(headLine(report, title), (page, pages) => [
+    [
+      `${result.layout.file} ${result.layout.sha256.slice(0, 12)}`,
+      result.run_sheet === null
+        ? 'no run sheet'
+        : `${result.run_sheet.file} ${result.run_sheet.sha256.slice(0, 12)}`,
+      creator,
+      isoDate(options.date),
+    ].join('  ·  '),
+    `page ${page} of ${pages}`,
+  ]);
+}
+
+function headLine({ result, cases }: Report, title: string): string {
+  const { sheet } = cases[0].network.chip;
+  const drawing = sheet === null ? '' : drawingText(sheet.drawing);
+  const verdict =
+    'cases' in result
+      ? `${cases.length} cases: ${result.verdict}`
+      : verdictLine(result.verdict, result.counts);
+  return [title, drawing, verdict].filter((part) => part !== '').join('  ·  ');
+}
+
+/** "C-114 revision B": what of it the run sheet gives. */
+export function drawingText({
+  number,
+  revision,
+}: {
+  readonly number: string | null;
+  readonly revision: string | null;
+}): string {
+  return [number === null ? null : `drawing ${number}`, revision === null ? null : `revision ${revision}`]
+    .filter((part) => part !== null)
+    .join(', ');
+}

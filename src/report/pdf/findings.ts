@@ -1,0 +1,241 @@
+import type { Finding } from '../../findings/types.ts';
+import { drawPlace, type PlaceDrawing } from '../place.ts';
+import { formatMm, measureText } from '../quantity.ts';
+import { plural, verdictLine } from '../verdict-line.ts';
+import { BODY, BODY_BOLD, type PageContext, SMALL } from './context.ts';
+import { inMillimetres, paintLabel, paintScaleBar, paintStrokes, putCentred } from './paint-map.ts';
+import { type Element, lineHeight, POINTS_PER_MM } from './paper.ts';
+import { cells, drawTable } from './table.ts';
+
+/** Findings with a picture each, then as lines of a table, then only counted. */
+const PICTURES = 120;
+const LINES = 1000;
+const PICTURE_MM = { width: 58, height: 40 } as const;
+
+/** Every finding with its number, what, where and how to mend it, and its place to scale; then the rules that were not run. */
+export function writeFindings(context: PageContext): void {
+  const { paper, one } = context;
+  const { findings, notRun } = one.findings;
+  paper.newPage('portrait');
+  const section = paper.section();
+  paper.heading(section, 1, 'Findings');
+  paper.paragraph(
+    section,
+    `${verdictLine(one.part.verdict, one.part.counts)}. Numbers are those on the map of page 1; places are in drawing coordinates, mm, y down.`,
+    SMALL,
+  );
+  paper.y += 4;
+  if (findings.length === 0) paper.paragraph(section, 'No finding.', BODY);
+  findings.slice(0, PICTURES).forEach((finding, i) => {
+    writeFinding(context, section, finding, i + 1);
+  });
+  writeFurther(context, section, findings.slice(PICTURES, PICTURES + LINES));
+  const left = findings.length - PICTURES - LINES;
+  if (left > 0)
+    paper.paragraph(section, `… and ${plural(left, 'more finding')}, all in the JSON result.`, BODY);
+  writeNotRun(context, section, notRun);
+}
+
+const COLOURS = { blocker: '#8f1414', caution: '#7a5200', note: '#1f4e79' } as const;
+const ACCEPTED_COLOUR = '#555555';
+
+function writeFinding(context: PageContext, section: Element, finding: Finding, number: number): void {
+  const { paper, one, geometry, measure, readable } = context;
+  const measured =
+    finding.measured === null ? null : measureText(one.show, finding.measured, finding.unit, finding.rule);
+  const picture = drawPlace(geometry, finding, {
+    widthMm: PICTURE_MM.width,
+    heightMm: PICTURE_MM.height,
+    labelSizeMm: 2,
+    measure,
+    readable,
+    measured: finding.mark === undefined ? null : measured,
+  });
+  const pictureWidth = picture === null ? 0 : PICTURE_MM.width * POINTS_PER_MM + 10;
+  const textX = paper.left + 22;
+  const textWidth = paper.width - 22 - pictureWidth;
+  const paragraphs = findingTexts(context, finding, measured);
+  const textHeight = paragraphs.reduce(
+    (sum, text) => sum + paper.wrap(text, textWidth, BODY).length * lineHeight(BODY) + 2,
+    lineHeight(BODY_BOLD) + 3,
+  );
+  const height = Math.max(textHeight, picture === null ? 0 : PICTURE_MM.height * POINTS_PER_MM + 2);
+  // a text longer than a page runs over; anything else stays together
+  paper.need(Math.min(height + 6, paper.bottom - paper.top));
+  const top = paper.y;
+  const colour = finding.accepted === null ? COLOURS[finding.severity] : ACCEPTED_COLOUR;
+  paper.decoration(() => {
+    paper.doc.roundedRect(paper.left, top, 17, 12, 2).fill(colour);
+  });
+  paper.tagged(section, 'H2', () => {
+    const badge = { size: 7.5, weight: 'bold', colour: '#ffffff' } as const;
+    const text = String(number);
+    paper.put(text, paper.left + 8.5 - paper.widthOf(text, badge) / 2, top + 1.3, badge);
+    const title = `${finding.accepted === null ? finding.severity : `accepted ${finding.severity}`}: ${finding.rule}`;
+    const style = { ...BODY_BOLD, colour };
+    paper.put(paper.clip(title, textWidth, style), textX, top + 1.3, style);
+  });
+  paper.y = top + lineHeight(BODY_BOLD) + 3;
+  for (const text of paragraphs) paper.paragraph(section, text, BODY, { x: textX, width: textWidth });
+  const end = paper.y;
+  if (picture !== null && end > top) {
+    paintPlace(
+      context,
+      section,
+      picture,
+      paper.right - PICTURE_MM.width * POINTS_PER_MM,
+      top,
+      `Close-up of the place of finding ${number}`,
+    );
+  }
+  paper.y = Math.max(end, end > top ? top + height : end) + 6;
+}
+
+function findingTexts({ one }: PageContext, finding: Finding, measured: string | null): string[] {
+  const { accepted, xMm, yMm, limit, unit, rule } = finding;
+  const place = xMm === null || yMm === null ? null : `at ${formatMm(xMm)}, ${formatMm(yMm)} mm`;
+  const names = finding.names.length === 0 ? null : `concerns ${finding.names.join(', ')}`;
+  const values = [
+    measured === null ? null : `measured ${measured}`,
+    limit === null ? null : `limit ${measureText(one.show, limit, unit, rule)}`,
+  ].filter((part) => part !== null);
+  const ceiling =
+    accepted === null || accepted.upTo === null
+      ? ''
+      : `, up to ${measureText(one.show, accepted.upTo, unit, rule)}`;
+  return [
+    finding.message,
+    [place, names, ...values].filter((part) => part !== null).join('; '),
+    finding.fix === '' ? '' : `To put it right: ${finding.fix}`,
+    accepted === null
+      ? ''
+      : `Accepted by ${accepted.by} on ${accepted.on}${ceiling}, because ${accepted.because}`,
+  ].filter((text) => text !== '');
+}
+
+function paintPlace(
+  { paper }: PageContext,
+  section: Element,
+  picture: PlaceDrawing,
+  x: number,
+  y: number,
+  alt: string,
+): void {
+  const { doc } = paper;
+  paper.tagged(
+    section,
+    'Figure',
+    () => {
+      inMillimetres(paper, x, y, () => {
+        doc.save();
+        doc.rect(0, 0, picture.widthMm, picture.heightMm).clip();
+        for (const ring of picture.edge) {
+          doc.moveTo(ring[0], ring[1]);
+          for (let i = 2; i < ring.length; i += 2) doc.lineTo(ring[i], ring[i + 1]);
+          doc.lineWidth(0.3).strokeColor('#606060').stroke();
+        }
+        paintStrokes(paper, picture.strokes);
+        for (const hole of picture.holes)
+          doc.circle(hole.x, hole.y, hole.radiusMm).lineWidth(0.3).fillAndStroke('#ffffff', '#202020');
+        paintMark(doc, picture);
+        const { scaleBar } = picture;
+        doc
+          .rect(
+            scaleBar.x - 1,
+            scaleBar.y - 1.2,
+            scaleBar.lengthMm + 2.5,
+            picture.heightMm - scaleBar.y + 1.2,
+          )
+          .fill('#ffffff');
+        paintScaleBar(paper, scaleBar);
+        doc.restore();
+        doc.rect(0, 0, picture.widthMm, picture.heightMm).lineWidth(0.2).strokeColor('#888888').stroke();
+      });
+      for (const label of picture.labels) paintLabel(paper, label, x, y);
+      const { scaleBar } = picture;
+      putCentred(
+        paper,
+        scaleBar.text,
+        x + (scaleBar.x + scaleBar.lengthMm / 2) * POINTS_PER_MM,
+        y + (scaleBar.y + 0.7) * POINTS_PER_MM,
+        scaleBar.sizeMm,
+      );
+    },
+    { alt },
+  );
+}
+
+const MARK_COLOUR = '#b00020';
+
+function paintMark(doc: PDFKit.PDFDocument, { mark, cross: [x, y] }: PlaceDrawing): void {
+  if (mark === null) {
+    doc.circle(x, y, 1.1).lineWidth(0.35).strokeColor(MARK_COLOUR).stroke();
+    doc
+      .moveTo(x - 1.8, y)
+      .lineTo(x + 1.8, y)
+      .moveTo(x, y - 1.8)
+      .lineTo(x, y + 1.8);
+    doc.lineWidth(0.2).strokeColor(MARK_COLOUR).stroke();
+    return;
+  }
+  const [x1, y1, x2, y2] = mark;
+  const length = Math.hypot(x2 - x1, y2 - y1) || 1;
+  const [nx, ny] = [(-(y2 - y1) / length) * 1.2, ((x2 - x1) / length) * 1.2];
+  doc.moveTo(x1, y1).lineTo(x2, y2);
+  for (const [ex, ey] of [
+    [x1, y1],
+    [x2, y2],
+  ]) {
+    doc.moveTo(ex - nx, ey - ny).lineTo(ex + nx, ey + ny);
+  }
+  doc.lineWidth(0.35).strokeColor(MARK_COLOUR).stroke();
+}
+
+function writeFurther({ paper, one }: PageContext, section: Element, findings: readonly Finding[]): void {
+  if (findings.length === 0) return;
+  paper.heading(section, 2, 'Further findings');
+  drawTable(
+    paper,
+    section,
+    [
+      { head: 'no.', align: 'right', width: 'fit' },
+      { head: 'severity', align: 'left', width: 'fit' },
+      { head: 'rule', align: 'left', width: 'fit' },
+      { head: 'x', unit: 'mm', align: 'right', width: 'fit' },
+      { head: 'y', unit: 'mm', align: 'right', width: 'fit' },
+      { head: 'measured', align: 'right', width: 'fit' },
+      { head: 'what', align: 'left', width: 'share' },
+    ],
+    findings.map((finding, i) =>
+      cells(
+        String(PICTURES + i + 1),
+        finding.accepted === null ? finding.severity : 'accepted',
+        finding.rule,
+        finding.xMm === null ? '–' : formatMm(finding.xMm),
+        finding.yMm === null ? '–' : formatMm(finding.yMm),
+        measureText(one.show, finding.measured, finding.unit, finding.rule),
+        finding.message,
+      ),
+    ),
+    { size: 6.5 },
+  );
+}
+
+function writeNotRun(
+  { paper }: PageContext,
+  section: Element,
+  notRun: readonly { readonly rule: string; readonly why: string }[],
+): void {
+  if (notRun.length === 0) return;
+  paper.y += 4;
+  paper.heading(section, 2, 'Rules not run');
+  drawTable(
+    paper,
+    section,
+    [
+      { head: 'rule', align: 'left', width: 'fit' },
+      { head: 'why', align: 'left', width: 'wrap' },
+    ],
+    notRun.map(({ rule, why }) => cells(rule, why)),
+  );
+}

@@ -1,0 +1,272 @@
+import type { Chip } from '../../chip/types.ts';
+import { drawMap } from '../map.ts';
+import { cleanText } from '../plain-text.ts';
+import { formatMm, formatNumber, formatShare, type Show } from '../quantity.ts';
+import type { PortRow } from '../result-schema.ts';
+import { plural, verdictCounts } from '../verdict-line.ts';
+import { BODY, BODY_BOLD, isoDate, type PageContext, SMALL } from './context.ts';
+import { drawingText } from './document.ts';
+import { factsHeight, writeFacts } from './facts.ts';
+import { paintMap } from './paint-map.ts';
+import { type Element, lineHeight, POINTS_PER_MM } from './paper.ts';
+import { type Column, cells, drawTable, type TableRow } from './table.ts';
+
+const SIGN_HEIGHT = 40;
+
+/**
+ * Page 1: verdict with all its counts and what was not checked, the chip coloured by pressure, ports, what went in, and lines to sign.
+ * A long ports table runs on over the next pages.
+ */
+export function writeFrontPage(context: PageContext): void {
+  const { paper, one } = context;
+  paper.newPage('portrait');
+  paper.bookmark(one.name === null ? 'Verdict' : `Case ${cleanText(one.name)}: verdict`);
+  const section = paper.section();
+  writeVerdict(context, section);
+  const facts = inputFacts(context);
+  const below = factsHeight(paper, facts, { ...FACTS, width: paper.width }) + SIGN_HEIGHT + 34;
+  writePressureMap(context, section, below);
+  // ports get what is left above the inputs, and continue overleaf
+  const rowsHere = Math.max(2, Math.floor((paper.bottom - below - paper.y - 40) / 10));
+  const ports = one.part.ports;
+  const here = ports.length <= rowsHere ? ports : ports.slice(0, rowsHere);
+  writePorts(context, section, 'Ports', here, ports.length - here.length);
+  paper.y = Math.max(paper.y, paper.bottom - below + 6);
+  paper.heading(section, 3, 'What went in');
+  writeFacts(paper, section, facts, FACTS);
+  writeSignatures(context, section);
+  if (here.length < ports.length) {
+    paper.newPage('portrait');
+    writePorts(context, section, 'Ports, continued', ports.slice(here.length), 0);
+  }
+}
+
+const FACTS = { keyWidth: 62, size: 6.5 } as const;
+const VERDICT_COLOURS = { ready: '#14532d', hold: '#8f1414' } as const;
+
+function writeVerdict({ paper, report, one }: PageContext, section: Element): void {
+  const { sheet } = one.network.chip;
+  const { part } = one;
+  const title = [
+    sheet?.title ?? report.result.layout.file,
+    one.name === null ? '' : `, case ${one.name}`,
+  ].join('');
+  paper.tagged(section, 'H1', () => {
+    const style = { size: 14, weight: 'bold' } as const;
+    paper.put(paper.clip(title, paper.width, style), paper.left, paper.y, style);
+  });
+  paper.y += 18;
+  const drawing = [
+    sheet === null ? '' : drawingText(sheet.drawing),
+    sheet?.drawing.drawnBy == null ? '' : `drawn by ${sheet.drawing.drawnBy}`,
+    `layout ${report.result.layout.file}`,
+  ].filter((text) => text !== '');
+  paper.paragraph(section, drawing.join(', '), BODY);
+  const boxY = paper.y + 1;
+  const word = part.verdict.toUpperCase();
+  const wordStyle = { size: 15, weight: 'bold', colour: '#ffffff' } as const;
+  const wordWidth = paper.widthOf(word, wordStyle) + 16;
+  paper.decoration(() => {
+    paper.doc.rect(paper.left, boxY, wordWidth, 22).fill(VERDICT_COLOURS[part.verdict]);
+    paper.doc
+      .rect(paper.left, boxY, paper.width, 22)
+      .lineWidth(0.8)
+      .strokeColor(VERDICT_COLOURS[part.verdict])
+      .stroke();
+  });
+  paper.tagged(section, 'P', () => {
+    paper.put(word, paper.left + 8, boxY + 2.2, wordStyle);
+    const counts = { size: 9.5, weight: 'bold' } as const;
+    const text = `${verdictCounts(part.counts)}, ${plural(part.counts.notes, 'note')}`;
+    paper.put(text, paper.left + wordWidth + 8, boxY + 5.2, counts);
+  });
+  paper.y = boxY + 25;
+  const listed =
+    part.not_run.length === 0
+      ? 'Every rule was run.'
+      : `Not checked: ${part.not_run.map(({ rule, why }) => `${rule} (${why})`).join('; ')}.`;
+  const lines = paper.wrap(listed, paper.width, SMALL);
+  const shown =
+    lines.length <= 3
+      ? lines.join(' ')
+      : `${lines.slice(0, 2).join(' ')} … All are listed with the findings.`;
+  paper.paragraph(section, shown, SMALL);
+}
+
+function writePressureMap(
+  { paper, one, geometry, measure, readable }: PageContext,
+  section: Element,
+  below: number,
+): void {
+  const room = paper.bottom - below - paper.y - 90;
+  const drawing = drawMap(one, geometry, {
+    quantity: 'pressure',
+    widthMm: paper.width / POINTS_PER_MM,
+    heightMm: Math.max(60, Math.min(room / POINTS_PER_MM, 130)),
+    labelSizeMm: 2.1,
+    measure,
+    readable,
+    findingNumbers: true,
+    reachLabels: false,
+  });
+  const counts = one.part.counts;
+  const alt = `The chip as drawn, ${plural(counts.channels, 'channel')} coloured by pressure, ${plural(counts.ports, 'port')} named; the numbers are in the tables.`;
+  paintMap(paper, section, drawing, paper.left, paper.y, alt);
+  paper.y += drawing.heightMm * POINTS_PER_MM;
+  const numbers = drawing.markers.length === 0 ? '' : ' Numbers are those of the findings.';
+  paper.paragraph(section, `${drawing.caption}${numbers}`, SMALL);
+}
+
+function writePorts(
+  context: PageContext,
+  section: Element,
+  title: string,
+  ports: readonly PortRow[],
+  more: number,
+): void {
+  const { paper, one } = context;
+  if (ports.length === 0) return;
+  paper.heading(section, 3, title);
+  const { columns, rows } = portsTable(one.part.ports, ports, one.show);
+  drawTable(paper, section, columns, rows, { size: 6.8 });
+  if (more > 0) {
+    paper.y -= 4;
+    paper.paragraph(section, `… and ${plural(more, 'more port')} on the next page.`, SMALL);
+  }
+}
+
+/** Units fit all ports of the chip, so that they do not change over a page. */
+export function portsTable(
+  all: readonly PortRow[],
+  shown: readonly PortRow[],
+  show: Show,
+): { columns: readonly Column[]; rows: readonly TableRow[] } {
+  const largest = (pick: (port: PortRow) => number | null): number =>
+    Math.max(0, ...all.map((port) => Math.abs(pick(port) ?? 0)));
+  const pressure = show.unit(
+    'pressure',
+    Math.max(
+      largest((port) => port.pressure_pa),
+      largest((port) => port.supply_pressure_pa),
+    ),
+  );
+  const flow = show.unit(
+    'flow',
+    largest((port) => port.flow_m3_s),
+  );
+  const volume = show.unit(
+    'volume',
+    largest((port) => port.tubing_volume_m3),
+  );
+  const time = show.unit(
+    'residence_time',
+    largest((port) => port.tubing_time_s),
+  );
+  const withTubing = all.some((port) => port.tubing_volume_m3 !== null);
+  const withJoints = all.some((port) => port.joint_flow_share !== null);
+  const number = (value: number | null, si: number): string =>
+    value === null ? '–' : formatNumber(value / si);
+  const columns: Column[] = [
+    { head: 'port', align: 'left', width: 'share' },
+    { head: 'condition', align: 'left', width: 'fit' },
+    { head: 'in the chip', unit: pressure.text, align: 'right', width: 'fit' },
+    { head: 'at the supply', unit: pressure.text, align: 'right', width: 'fit' },
+    { head: 'flow into chip', unit: flow.text, align: 'right', width: 'fit' },
+    ...(withTubing
+      ? ([
+          { head: 'tubing holds', unit: volume.text, align: 'right', width: 'fit' },
+          { head: 'time in tubing', unit: time.text, align: 'right', width: 'fit' },
+        ] as const)
+      : []),
+    ...(withJoints
+      ? ([{ head: 'joints not resolved', unit: 'could move it by ±', align: 'right', width: 'fit' }] as const)
+      : []),
+  ];
+  const rows = shown.map((port) =>
+    cells(
+      port.name,
+      port.condition,
+      number(port.pressure_pa, pressure.si),
+      number(port.supply_pressure_pa, pressure.si),
+      number(port.flow_m3_s, flow.si),
+      ...(withTubing ? [number(port.tubing_volume_m3, volume.si), number(port.tubing_time_s, time.si)] : []),
+      ...(withJoints ? [formatShare(port.joint_flow_share)] : []),
+    ),
+  );
+  return { columns, rows };
+}
+
+function inputFacts({ report, one, date }: PageContext): readonly (readonly [string, string])[] {
+  const { chip } = one.network;
+  const { layout, run_sheet, tool } = report.result;
+  return [
+    ['layout', `${layout.file}, SHA-256 ${layout.sha256}`],
+    [
+      'run sheet',
+      run_sheet === null
+        ? 'none: geometry rules only, defaults elsewhere'
+        : `${run_sheet.file}, SHA-256 ${run_sheet.sha256}`,
+    ],
+    ['fluid', fluidText(chip)],
+    ['depth', depthText(chip)],
+    ['chip size', sizeText(chip)],
+    [
+      'joints',
+      chip.joints === 'centreline'
+        ? 'centreline: corners, bends and junctions add nothing of their own'
+        : 'resolved: each computed joint adds its end correction',
+    ],
+    ['not read', ignoredText(chip)],
+    ['written', `by ${tool.name} ${tool.version} on ${isoDate(date)}`],
+  ];
+}
+
+function fluidText({ fluid }: Chip): string {
+  const celsius = formatNumber(Number((fluid.temperatureK - 273.15).toFixed(6)));
+  return `${fluid.name} at ${celsius} °C: viscosity ${formatNumber(fluid.viscosityPaS * 1000)} mPa s, density ${formatNumber(fluid.densityKgM3)} kg/m³ (${fluid.source})`;
+}
+
+const LAYERS_LISTED = 8;
+
+function depthText({ layers }: Chip): string {
+  const listed = layers.slice(0, LAYERS_LISTED).map(({ name, depthM, depthOrigin, profile }) => {
+    const depth = Number.isNaN(depthM)
+      ? 'depth unknown'
+      : `${formatNumber(depthM * 1e6)} µm (${depthOrigin})`;
+    return `${name === '' ? 'strokes in no layer' : name} ${depth}${profile === 'isotropic' ? ', isotropic profile' : ''}`;
+  });
+  const more = layers.length - listed.length;
+  return (
+    [...listed, ...(more > 0 ? [`and ${plural(more, 'more layer')}, listed with the model`] : [])].join(
+      '; ',
+    ) || 'no layer'
+  );
+}
+
+function sizeText({ edge, sizeMm, widthMm, heightMm, unitReason }: Chip): string {
+  const sides = (size: readonly [number, number]): string => `${formatMm(size[0])} × ${formatMm(size[1])} mm`;
+  const read = edge === null ? 'no chip edge drawn' : `${sides(edge.sidesMm)} as read from ${edge.name}`;
+  const wanted = sizeMm === null ? 'no size given to compare' : `${sides(sizeMm)} wanted`;
+  const drawing = widthMm === null || heightMm === null ? '' : `; drawing ${sides([widthMm, heightMm])}`;
+  return `${read}; ${wanted}${drawing}; scale: ${unitReason}`;
+}
+
+function ignoredText({ ignored }: Chip): string {
+  const kinds = Object.entries(ignored).filter(([, count]) => count > 0);
+  return kinds.length === 0
+    ? 'nothing: all that is drawn was read'
+    : kinds.map(([kind, count]) => `${count} ${kind}`).join(', ');
+}
+
+function writeSignatures({ paper }: PageContext, section: Element): void {
+  const y = Math.max(paper.y + 20, paper.bottom - 14);
+  const labels = ['checked', 'approved', 'date'];
+  const gap = 18;
+  const width = (paper.width - gap * (labels.length - 1)) / labels.length;
+  labels.forEach((label, i) => {
+    const x = paper.left + i * (width + gap);
+    paper.rule(y, x, x + width, '#222222', 0.5);
+    paper.tagged(section, 'P', () => paper.put(label, x, y + 2, BODY_BOLD));
+  });
+  paper.y = y + 2 + lineHeight(BODY);
+}

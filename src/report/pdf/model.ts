@@ -1,0 +1,180 @@
+import type { Chip, Sourced } from '../../chip/types.ts';
+import { formatNumber, formatShare } from '../quantity.ts';
+import { BODY, type PageContext } from './context.ts';
+import type { Element, Paper } from './paper.ts';
+import { cells, drawTable, type TableRow } from './table.ts';
+
+/** The model in words, its formulas with their sources, and the depths and limits in force with where each came from. */
+export function writeModel({ paper, one }: PageContext): void {
+  const { chip } = one.network;
+  paper.newPage('portrait');
+  const section = paper.section();
+  paper.heading(section, 1, 'Model');
+  for (const text of modelTexts(chip)) paper.paragraph(section, text, BODY);
+  paper.y += 4;
+  paper.heading(section, 2, 'Formulas and sources');
+  drawTable(
+    paper,
+    section,
+    [
+      { head: 'what', align: 'left', width: 'fit' },
+      { head: 'formula', align: 'left', width: 'wrap' },
+      { head: 'source', align: 'left', width: 'wrap' },
+    ],
+    FORMULAS.map((texts) => cells(...texts)),
+    { size: 6.8 },
+  );
+  writeLayers(paper, section, chip);
+  writeLimits(paper, section, chip);
+}
+
+function modelTexts(chip: Chip): readonly string[] {
+  return [
+    'Each channel is cut into straight rectangular ducts. In each the flow is laminar, steady, fully developed and Newtonian between rigid walls, solved exactly; pressures and flows balance at every node. Entrance lengths, inertia, compressible or yielding walls, gravity inside the chip and surface tension are left out; findings say where that may matter.',
+    `Meeting. Centrelines of one plane that meet or cross are joined, also where no vertex is drawn. A channel end inside another channel's strip is carried on to that channel's centreline. "Inside" has a slack of ${formatNumber(chip.joinWithinMm * 1000)} µm, which decides whether two things meet and never how long they are.`,
+    'Ends. What overshoots a join and ends dead inside the strip it joined is left out; so are short overlaps of two ends along one line.',
+    'Trimming. Near a node, the part of a channel (width w, depth h) that lies inside the strip of another that meets there (W, H) counts as p·min(1, w/W)·min(1, h/H)³ of its length p. Equal ducts lose nothing, a far wider or deeper one takes nearly all.',
+    'Wells. Inside a port the fluid is open: no resistance, part of no reach. Lengths start at the rim.',
+    chip.joints === 'centreline'
+      ? 'Joints. Lengths follow the centrelines; corners, bends and junctions add nothing of their own. Against resolved three-dimensional flow that over-estimates a serpentine of mitred turns by 5 to 8 % and under-estimates a feeder into a chamber by about 5 %.'
+      : 'Joints. Corners, bends and junctions whose case was computed add their end correction; the others keep the centreline rules, and how far they could move each flow is with the ports.',
+    'Shear is that of the fully developed profile: the floor is the etched bottom (and the lid), width wide; the sides are depth high. Mean is over the wall, peak is in its middle. Cells sit on the floor.',
+    'Residence time is volume over flow; the fastest fluid moves on the axis and passes in length over peak velocity. Both use the duct length without what joints add.',
+  ];
+}
+
+const FORMULAS: readonly (readonly [string, string, string])[] = [
+  [
+    'resistance',
+    'R = 12 µ L/(l s³ F), F = 1 − (192/π⁵)(s/l) Σ tanh(nπl/2s)/n⁵, n odd; s the shorter, l the longer side',
+    'R. K. Shah & A. L. London, Laminar Flow Forced Convection in Ducts, Academic Press 1978, ch. VII',
+  ],
+  ['peak velocity', 'u = (G s²/8µ)[1 − (32/π³) Σ (−1)^((n−1)/2) sech(nπl/2s)/n³], G = Δp/L', 'the same'],
+  [
+    'shear, long wall',
+    'mean (G s/2)[1 − (16 s/π³l) Σ tanh(nπl/2s)/n³]; peak (G s/2)[1 − (8/π²) Σ sech(nπl/2s)/n²]',
+    'the same',
+  ],
+  [
+    'shear, short wall',
+    'mean (8 G s/π³) Σ tanh(nπl/2s)/n³; peak (4 G s/π²) Σ (−1)^((n−1)/2) tanh(nπl/2s)/n²',
+    'the same',
+  ],
+  ['Reynolds number', 'Re = ρ u D/µ, u the mean velocity, D = 2wh/(w + h)', 'definition'],
+  [
+    'entrance length',
+    'D·(0.6/(1 + 0.035 Re) + 0.056 Re), the tube form on the hydraulic diameter',
+    'R.-Y. Chen, J. Fluids Eng. 95 (1973) 153',
+  ],
+  ['Dean number', 'De = Re √(D/2r), r the bend radius', 'C. M. White, Proc. R. Soc. A 123 (1929) 645'],
+  ['tubing', 'R = 128 µ L/(π d⁴)', 'Hagen and Poiseuille, any textbook'],
+  ['reservoir', 'p = ρ g × level above the chip, g = 9.80665 m/s²', 'definition; standard gravity'],
+  [
+    'isotropic profile',
+    'duct as deep and of the same area: width = mask + π·depth/2; walls at mask + 2·depth',
+    'good to 5 % in resistance and 3 % in shear',
+  ],
+  ['water', 'viscosity and density at 0.1 MPa, 253.15 K to 383.15 K', 'IAPWS SR6-08(2011)'],
+  [
+    'glycerol in water',
+    'viscosity and density by mass fraction and temperature',
+    'N.-S. Cheng, Ind. Eng. Chem. Res. 47 (2008) 3285; A. Volk & C. J. Kähler, Exp. Fluids 59 (2018) 75',
+  ],
+  [
+    'network',
+    'ΣQ = 0 at each inner node, Δp = R Q on each reach; sparse LDLᵀ with refinement',
+    'T. A. Davis, ACM Trans. Math. Softw. 31 (2005) 587',
+  ],
+];
+
+const LAYER_BOUND = 500;
+
+function writeLayers(paper: Paper, section: Element, chip: Chip): void {
+  if (chip.layers.length === 0) return;
+  paper.heading(section, 2, 'Layers');
+  drawTable(
+    paper,
+    section,
+    [
+      { head: 'layer', align: 'left', width: 'share' },
+      { head: 'plane', align: 'left', width: 'share' },
+      { head: 'depth', unit: 'µm', align: 'right', width: 'fit' },
+      { head: 'depth from', align: 'left', width: 'fit' },
+      { head: 'profile', align: 'left', width: 'fit' },
+    ],
+    chip.layers
+      .slice(0, LAYER_BOUND)
+      .map(({ name, plane, depthM, depthOrigin, profile }) =>
+        cells(
+          name === '' ? '(none)' : name,
+          chip.planes[plane] ?? '',
+          Number.isNaN(depthM) ? '–' : formatNumber(depthM * 1e6),
+          depthOrigin,
+          profile,
+        ),
+      ),
+  );
+}
+
+function writeLimits(paper: Paper, section: Element, { limits, process, layers }: Chip): void {
+  paper.heading(section, 2, 'Limits');
+  paper.paragraph(
+    section,
+    process === null
+      ? 'No process is named, so only limits of the run sheet and the defaults apply.'
+      : `Process: ${process}.`,
+    BODY,
+  );
+  const micrometres = (metres: number): string => `${formatNumber(metres * 1e6)} µm`;
+  const millimetres = (metres: number): string => `${formatNumber(metres * 1e3)} mm`;
+  const kilopascals = (pascals: number): string => `${formatNumber(pascals / 1e3)} kPa`;
+  const depths = [
+    ...new Set(layers.map(({ depthM }) => depthM).filter((depthM) => !Number.isNaN(depthM))),
+  ].slice(0, 12);
+  const rows: TableRow[] = [
+    limitRow('narrowest channel', limits.minWidthM, micrometres),
+    ...depths.map((depthM) =>
+      limitRow(`thinnest wall, depth ${micrometres(depthM)}`, limits.minWallM(depthM), micrometres),
+    ),
+    limitRow('width over depth', limits.maxWidthToDepth, (ratio) => `at most ${formatNumber(ratio)}`),
+    limitRow('depth over width', limits.maxDepthToWidth, (ratio) => `at most ${formatNumber(ratio)}`),
+    limitRow('margin to the edge', limits.edgeMarginM, millimetres),
+    limitRow('gap between rims', limits.portGapM, millimetres),
+    limitRow(
+      'hole diameter',
+      limits.portDiameterM,
+      ([least, most]) => `${formatNumber(least * 1e3)} to ${millimetres(most)}`,
+    ),
+    limitRow('port grid', limits.portGridM, millimetres),
+    limitRow('highest pressure', limits.maxPressurePa, kilopascals),
+    limitRow('lowest pressure', limits.minPressurePa, kilopascals),
+    limitRow('Reynolds number', limits.maxReynolds, (value) => `at most ${formatNumber(value)}`),
+    limitRow(
+      'sharpest corner',
+      limits.minCornerAngleRad,
+      (angle) => `${formatNumber((angle * 180) / Math.PI)}°`,
+    ),
+    limitRow('stiffness', limits.stiffnessPa, (pascals) => `${formatNumber(pascals / 1e6)} MPa`),
+  ];
+  drawTable(
+    paper,
+    section,
+    [
+      { head: 'limit', align: 'left', width: 'fit' },
+      { head: 'value', align: 'left', width: 'fit' },
+      { head: 'from', align: 'left', width: 'share' },
+    ],
+    rows,
+  );
+  paper.paragraph(
+    section,
+    `The relative slack of every comparison is 1e-9 (${formatShare(1e-9)}), in the drawing's favour.`,
+    BODY,
+  );
+}
+
+function limitRow<T>(what: string, limit: Sourced<T> | null, text: (value: T) => string): TableRow {
+  return limit === null
+    ? cells(what, 'none', 'not given: not checked')
+    : cells(what, text(limit.value), limit.origin);
+}

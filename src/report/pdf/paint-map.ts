@@ -1,0 +1,159 @@
+import type { MapDrawing, MapLabel, MapStroke } from '../map.ts';
+import { type Element, type Paper, POINTS_PER_MM } from './paper.ts';
+
+/** Paints a map with its upper left corner at x, y (points) as a tagged figure; its texts were measured in the paper's font. */
+export function paintMap(
+  paper: Paper,
+  parent: Element,
+  drawing: MapDrawing,
+  x: number,
+  y: number,
+  alt: string,
+): void {
+  paper.tagged(
+    parent,
+    'Figure',
+    () => {
+      inMillimetres(paper, x, y, () => {
+        paintEdge(paper, drawing);
+        paintStrokes(paper, drawing.ground);
+        paintStrokes(
+          paper,
+          drawing.reaches.flatMap(({ strokes }) => strokes),
+        );
+        paintHoles(paper, drawing);
+        paintMarkers(paper, drawing);
+        paintLegend(paper, drawing);
+        paintScaleBar(paper, drawing.scaleBar);
+      });
+      for (const label of drawing.labels) paintLabel(paper, label, x, y);
+      paintTexts(paper, drawing, x, y);
+    },
+    { alt },
+  );
+}
+
+/** Runs `paint` with the unit 1 mm and the origin at x, y. */
+export function inMillimetres(paper: Paper, x: number, y: number, paint: () => void): void {
+  paper.doc.save();
+  paper.doc.translate(x, y).scale(POINTS_PER_MM);
+  paint();
+  paper.doc.restore();
+}
+
+function paintEdge({ doc }: Paper, { edge }: Pick<MapDrawing, 'edge'>): void {
+  for (const ring of edge) {
+    trace(doc, ring);
+    doc.lineWidth(0.2).strokeColor('#606060').stroke();
+  }
+}
+
+/** Strokes of one look are painted in one go: 100 000 of them are a few dozen paint operations. */
+export function paintStrokes({ doc }: Paper, strokes: readonly MapStroke[]): void {
+  const looks = new Map<string, MapStroke[]>();
+  for (const stroke of strokes) {
+    const key = `${stroke.colour} ${stroke.widthMm} ${stroke.cap}`;
+    const same = looks.get(key);
+    if (same === undefined) looks.set(key, [stroke]);
+    else same.push(stroke);
+  }
+  doc.lineJoin('round');
+  for (const same of looks.values()) {
+    for (const { points } of same) trace(doc, points);
+    const [{ widthMm, colour, cap }] = same;
+    doc.lineCap(cap).lineWidth(widthMm).strokeColor(colour).stroke();
+  }
+  doc.lineCap('butt');
+}
+
+function trace(doc: PDFKit.PDFDocument, points: readonly number[]): void {
+  doc.moveTo(points[0], points[1]);
+  for (let i = 2; i < points.length; i += 2) doc.lineTo(points[i], points[i + 1]);
+}
+
+function paintHoles({ doc }: Paper, { holes }: MapDrawing): void {
+  for (const { x, y, radiusMm } of holes) {
+    doc.circle(x, y, Math.max(radiusMm, 0.3)).lineWidth(0.25).fillAndStroke('#ffffff', '#202020');
+  }
+}
+
+const FINDING_COLOUR = '#b00020';
+
+function paintMarkers({ doc }: Paper, { markers }: MapDrawing): void {
+  for (const { x, y } of markers)
+    doc.circle(x, y, 0.55).lineWidth(0.3).fillAndStroke('#ffffff', FINDING_COLOUR);
+}
+
+export function paintLabel(
+  paper: Paper,
+  { kind, text, box, sizeMm, leader }: MapLabel,
+  x: number,
+  y: number,
+): void {
+  inMillimetres(paper, x, y, () => {
+    if (leader !== null) {
+      trace(paper.doc, leader);
+      paper.doc
+        .lineWidth(0.12)
+        .strokeColor(kind === 'finding' ? FINDING_COLOUR : '#505050')
+        .stroke();
+    }
+    if (kind === 'finding') {
+      paper.doc
+        .roundedRect(box.x, box.y, box.width, box.height, 0.5)
+        .lineWidth(0.25)
+        .fillAndStroke('#ffffff', FINDING_COLOUR);
+    }
+  });
+  const style = { size: sizeMm * POINTS_PER_MM, weight: kind === 'reach' ? 'regular' : 'bold' } as const;
+  const left = x + (box.x + box.width / 2) * POINTS_PER_MM - paper.widthOf(text, style) / 2;
+  paper.put(text, left, y + (box.y + (box.height - 1.17 * sizeMm) / 2) * POINTS_PER_MM, style);
+}
+
+function paintLegend({ doc }: Paper, { legend }: MapDrawing): void {
+  if (legend === null) return;
+  const { bar, colours, ticks } = legend;
+  const step = bar.width / colours.length;
+  colours.forEach((colour, i) => {
+    doc.rect(bar.x + i * step, bar.y, step + (i + 1 < colours.length ? 0.1 : 0), bar.height).fill(colour);
+  });
+  for (const { x } of ticks) {
+    doc.moveTo(x, bar.y + bar.height).lineTo(x, bar.y + bar.height + 0.6);
+  }
+  doc.lineWidth(0.15).strokeColor('#000000').stroke();
+}
+
+export function paintScaleBar({ doc }: Paper, { x, y, lengthMm }: MapDrawing['scaleBar']): void {
+  doc
+    .moveTo(x, y - 0.6)
+    .lineTo(x, y + 0.6)
+    .moveTo(x, y)
+    .lineTo(x + lengthMm, y);
+  doc.moveTo(x + lengthMm, y - 0.6).lineTo(x + lengthMm, y + 0.6);
+  doc.lineWidth(0.35).strokeColor('#000000').stroke();
+}
+
+function paintTexts(paper: Paper, { legend, scaleBar }: MapDrawing, x: number, y: number): void {
+  const at = (xMm: number, yMm: number): readonly [number, number] => [
+    x + xMm * POINTS_PER_MM,
+    y + yMm * POINTS_PER_MM,
+  ];
+  putCentred(
+    paper,
+    scaleBar.text,
+    ...at(scaleBar.x + scaleBar.lengthMm / 2, scaleBar.y + 0.8),
+    scaleBar.sizeMm,
+  );
+  if (legend === null) return;
+  const style = { size: legend.sizeMm * POINTS_PER_MM };
+  const title = [legend.title, legend.grey].filter((part) => part !== null).join('; ');
+  paper.put(title, ...at(legend.titleAt[0], legend.titleAt[1] - 0.1 * legend.sizeMm), style);
+  for (const tick of legend.ticks) {
+    putCentred(paper, tick.text, ...at(tick.x, legend.bar.y + legend.bar.height + 0.7), legend.sizeMm);
+  }
+}
+
+export function putCentred(paper: Paper, text: string, x: number, y: number, sizeMm: number): void {
+  const style = { size: sizeMm * POINTS_PER_MM };
+  paper.put(text, x - paper.widthOf(text, style) / 2, y, style);
+}

@@ -1,0 +1,288 @@
+import PDFDocument from 'pdfkit';
+import { cleanText, wrapMeasured } from '../plain-text.ts';
+import { glyphCoverage } from './glyph-coverage.ts';
+import { layOutPlainly } from './plain-layout.ts';
+
+export interface Fonts {
+  readonly regular: Uint8Array;
+  readonly bold: Uint8Array;
+}
+
+export type PaperSize = 'a4' | 'letter';
+export type Weight = 'regular' | 'bold';
+export type Element = PDFKit.PDFStructureElement;
+export type StructureType = 'H1' | 'H2' | 'H3' | 'P' | 'Figure' | 'TH' | 'TD' | 'Caption' | 'Lbl' | 'Code';
+
+export interface TextStyle {
+  readonly size: number;
+  readonly weight?: Weight;
+  readonly colour?: string;
+}
+
+/** Portrait sizes in points, 1/72 inch. */
+const SIZES: Record<PaperSize, readonly [number, number]> = { a4: [595.28, 841.89], letter: [612, 792] };
+export const POINTS_PER_MM = 72 / 25.4;
+const MARGIN = 42;
+const INK = '#111111';
+
+/**
+ * Sheets of paper with one embedded font in two weights, written from the top down. Everything drawn is either tagged with its
+ * place in the document's structure or marked as decoration, so that a screen reader finds its way. Lengths in points.
+ */
+export class Paper {
+  readonly doc: PDFKit.PDFDocument;
+  /** Next free height on the page, from the top. */
+  y = MARGIN;
+  private readonly size: readonly [number, number];
+  private readonly has: Record<Weight, (codePoint: number) => boolean>;
+  private readonly root: Element;
+  private readonly chunks: Uint8Array[] = [];
+  private orientation: 'portrait' | 'landscape' = 'portrait';
+
+  constructor(options: {
+    readonly fonts: Fonts;
+    readonly paper: PaperSize;
+    readonly date: Date;
+    readonly title: string;
+    readonly subject: string;
+    readonly creator: string;
+  }) {
+    const { fonts, paper, date, title, subject, creator } = options;
+    this.size = SIZES[paper];
+    this.doc = new PDFDocument({
+      autoFirstPage: false,
+      bufferPages: true,
+      pdfVersion: '1.7',
+      tagged: true,
+      lang: 'en',
+      displayTitle: true,
+      // an empty name: otherwise a standard font without the needed glyphs is loaded
+      font: '',
+      info: { Title: title, Subject: subject, Creator: creator, Producer: creator, CreationDate: date },
+    });
+    this.doc.on('data', (chunk: Uint8Array) => this.chunks.push(chunk));
+    // pdfkit's own type wants a Buffer-like source; a Uint8Array is what it reads
+    this.doc.registerFont('regular', fonts.regular as PDFKit.Mixins.PDFFontSource);
+    this.doc.registerFont('bold', fonts.bold as PDFKit.Mixins.PDFFontSource);
+    for (const weight of ['regular', 'bold'] as const) {
+      this.doc.font(weight);
+      layOutPlainly(this.doc);
+    }
+    this.has = { regular: glyphCoverage(fonts.regular), bold: glyphCoverage(fonts.bold) };
+    this.root = this.doc.struct('Document');
+    this.doc.addStructure(this.root);
+  }
+
+  get left(): number {
+    return MARGIN;
+  }
+
+  get right(): number {
+    return this.doc.page.width - MARGIN;
+  }
+
+  get width(): number {
+    return this.doc.page.width - 2 * MARGIN;
+  }
+
+  get top(): number {
+    return MARGIN + 6;
+  }
+
+  get bottom(): number {
+    return this.doc.page.height - MARGIN - 4;
+  }
+
+  newPage(orientation: 'portrait' | 'landscape' = this.orientation): void {
+    this.orientation = orientation;
+    const [short, long] = this.size;
+    this.doc.addPage({
+      size: orientation === 'portrait' ? [short, long] : [long, short],
+      margins: { left: 0, right: 0, top: 0, bottom: 0 },
+    });
+    this.y = this.top;
+  }
+
+  /** Turns to a new page when less than this is left. */
+  need(height: number): void {
+    if (this.y + height > this.bottom) this.newPage();
+  }
+
+  /** A part of the document in the structure tree. */
+  section(): Element {
+    const section = this.doc.struct('Sect');
+    this.root.add(section);
+    return section;
+  }
+
+  child(parent: Element, type: 'Table' | 'TR' | 'THead' | 'TBody' | 'L' | 'Sect'): Element {
+    const element = this.doc.struct(type);
+    parent.add(element);
+    return element;
+  }
+
+  /** Draws something that has a place in the structure. */
+  tagged(
+    parent: Element,
+    type: StructureType,
+    draw: () => void,
+    options: { readonly alt?: string; readonly scope?: 'Row' | 'Column' } = {},
+  ): void {
+    const content = this.doc.markStructureContent(type);
+    draw();
+    this.doc.endMarkedContent();
+    const element = this.doc.struct(type, options, [content]);
+    parent.add(element);
+  }
+
+  /** Draws something that a reader who listens can do without. */
+  decoration(draw: () => void): void {
+    this.doc.markContent('Artifact', { type: 'Layout' });
+    draw();
+    this.doc.endMarkedContent();
+  }
+
+  /** Heading at the left margin, with a bookmark for levels 1 and 2. */
+  heading(parent: Element, level: 1 | 2 | 3, text: string, bookmark = text): void {
+    const size = level === 1 ? 13 : level === 2 ? 10 : 8.5;
+    this.need(size * 1.3 + 30);
+    if (level === 1) this.bookmark(bookmark);
+    this.tagged(parent, `H${level}`, () => {
+      const style = { size, weight: 'bold' } as const;
+      this.put(this.clip(text, this.width, style), this.left, this.y, style);
+    });
+    this.y += size * 1.3 + 3;
+  }
+
+  bookmark(text: string): void {
+    this.doc.outline.addItem(this.readable(text, 'regular'));
+  }
+
+  /** Wrapped text over the page's width, or a column's. Turns pages between lines. */
+  paragraph(
+    parent: Element,
+    text: string,
+    style: TextStyle,
+    at: { readonly x?: number; readonly width?: number } = {},
+  ): void {
+    const x = at.x ?? this.left;
+    const lines = this.wrap(text, at.width ?? this.right - x, style);
+    const step = lineHeight(style);
+    for (let done = 0; done < lines.length; ) {
+      this.need(step);
+      const room = Math.max(1, Math.floor((this.bottom - this.y) / step + 1e-9));
+      const part = lines.slice(done, done + room);
+      this.tagged(parent, 'P', () => {
+        for (const line of part) {
+          this.put(line, x, this.y, style);
+          this.y += step;
+        }
+      });
+      done += part.length;
+    }
+    this.y += 2;
+  }
+
+  /** One line of readable text with its top left corner at x, y. Not tagged by itself. */
+  put(text: string, x: number, y: number, style: TextStyle): void {
+    if (text === '') return;
+    this.use(style);
+    this.doc.fillColor(style.colour ?? INK);
+    this.doc.text(text, x, y, { lineBreak: false });
+  }
+
+  putRight(text: string, right: number, y: number, style: TextStyle): void {
+    this.put(text, right - this.widthOf(text, style), y, style);
+  }
+
+  /** Width of readable text. */
+  widthOf(text: string, style: TextStyle): number {
+    this.use(style);
+    return this.doc.widthOfString(text);
+  }
+
+  /**
+   * Text made harmless (see cleanText), each character that the font lacks replaced by its code: "[U+1F9EA]". Put, clip and wrap
+   * of a name start from this.
+   */
+  readable(text: string, weight: Weight = 'regular'): string {
+    let readable = '';
+    for (const character of cleanText(text)) {
+      const codePoint = character.codePointAt(0) ?? 0;
+      readable += this.has[weight](codePoint)
+        ? character
+        : `[U+${codePoint.toString(16).toUpperCase().padStart(4, '0')}]`;
+    }
+    return readable;
+  }
+
+  /** Readable text cut to a width with an ellipsis. */
+  clip(text: string, width: number, style: TextStyle): string {
+    const readable = this.readable(text, style.weight);
+    if (this.widthOf(readable, style) <= width) return readable;
+    const characters = [...readable];
+    let [low, high] = [0, characters.length];
+    while (low < high) {
+      const middle = (low + high + 1) >> 1;
+      if (this.widthOf(`${characters.slice(0, middle).join('')}…`, style) <= width) low = middle;
+      else high = middle - 1;
+    }
+    return `${characters.slice(0, low).join('')}…`;
+  }
+
+  /** Readable text in lines no wider than given. */
+  wrap(text: string, width: number, style: TextStyle): string[] {
+    return wrapMeasured(this.readable(text, style.weight), width, (line) => this.widthOf(line, style));
+  }
+
+  rule(y: number, from = this.left, to = this.right, colour = '#888888', thickness = 0.4): void {
+    this.decoration(() => {
+      this.doc.moveTo(from, y).lineTo(to, y).lineWidth(thickness).strokeColor(colour).stroke();
+    });
+  }
+
+  /** Head and foot lines of every page, then the bytes. */
+  finish(
+    head: string,
+    foot: (page: number, pages: number) => readonly [string, string],
+  ): Promise<Uint8Array> {
+    const { doc } = this;
+    const style = { size: 6.5, colour: '#444444' } as const;
+    const { start, count } = doc.bufferedPageRange();
+    for (let i = 0; i < count; i++) {
+      doc.switchToPage(start + i);
+      const [left, right] = foot(i + 1, count);
+      const page = this.readable(right);
+      const room = this.width - this.widthOf(page, style) - 12;
+      doc.markContent('Artifact', { type: 'Pagination' });
+      this.put(this.clip(head, this.width, style), this.left, MARGIN - 14, style);
+      this.put(this.clip(left, room, style), this.left, doc.page.height - MARGIN + 8, style);
+      this.putRight(page, this.right, doc.page.height - MARGIN + 8, style);
+      doc.endMarkedContent();
+    }
+    return new Promise((resolve, reject) => {
+      doc.on('error', reject);
+      doc.on('end', () => resolve(joined(this.chunks)));
+      doc.end();
+    });
+  }
+
+  private use({ size, weight = 'regular' }: TextStyle): void {
+    this.doc.font(weight).fontSize(size);
+  }
+}
+
+/** Height of a line of text: the font's ascender to descender, and a little. */
+export function lineHeight({ size }: TextStyle): number {
+  return 1.26 * size;
+}
+
+function joined(chunks: readonly Uint8Array[]): Uint8Array {
+  const bytes = new Uint8Array(chunks.reduce((sum, { length }) => sum + length, 0));
+  let offset = 0;
+  for (const chunk of chunks) {
+    bytes.set(chunk, offset);
+    offset += chunk.length;
+  }
+  return bytes;
+}

@@ -1,0 +1,113 @@
+import type { Channel } from '../chip/types.ts';
+import type { Window } from '../runsheet/types.ts';
+import { formatNumber, formatShare, type Show, type Shown } from './quantity.ts';
+import type { ReportedCase } from './report.ts';
+import type { ReachRow } from './result-schema.ts';
+import { sectionCache } from './section-values.ts';
+
+/** What a map can be coloured by. */
+export type MapQuantity = 'shear' | 'pressure' | 'flow' | 'residence';
+
+/**
+ * One value per reach (SI; NaN where there is none), without making rows: mean floor shear, magnitude of the flow,
+ * residence time, or the mean of the two end pressures.
+ */
+export function reachValues({ network, flow }: ReportedCase, quantity: MapQuantity): Float64Array {
+  const { chip } = network;
+  const sectionOf = sectionCache();
+  const values = new Float64Array(network.reachCount);
+  for (let reach = 0; reach < network.reachCount; reach++) {
+    values[reach] = valueAlong(reach);
+  }
+  return values;
+
+  function valueAlong(reach: number): number {
+    const flowM3s = Math.abs(flow.reachFlow[reach]);
+    switch (quantity) {
+      case 'pressure':
+        return (flow.nodePressure[network.reachFrom[reach]] + flow.nodePressure[network.reachTo[reach]]) / 2;
+      case 'flow':
+        return flowM3s;
+      case 'shear': {
+        const { ductWidthMm, depthMm } = chip.channels[network.reachChannel[reach]];
+        return sectionOf(ductWidthMm / 1000, depthMm / 1000).floorMeanPa(flowM3s, chip.fluid.viscosityPaS);
+      }
+      case 'residence': {
+        const { ductWidthMm, depthMm } = chip.channels[network.reachChannel[reach]];
+        const lengthMm = network.reachDuctMm[reach] - network.reachJointMm[reach];
+        const seconds = (ductWidthMm * depthMm * lengthMm * 1e-9) / flowM3s;
+        return Number.isFinite(seconds) ? seconds : Number.NaN;
+      }
+      default:
+        return quantity satisfies never;
+    }
+  }
+}
+
+/**
+ * Reaches that a reader looks for first: those of channels with a window, the ones that a finding calls outside it before the
+ * others; without windows the most sheared. At most `count`, each with its row.
+ */
+export function reachesThatMatter(
+  one: ReportedCase,
+  count: number,
+): { readonly rows: readonly ReachRow[]; readonly windows: boolean; readonly of: number } {
+  const { network, part } = one;
+  const { channels } = network.chip;
+  const outside = outsideWindows(one);
+  const shear = reachValues(one, 'shear');
+  const failing: number[] = [];
+  const windowed: number[] = [];
+  const sheared: number[] = [];
+  for (let reach = 0; reach < network.reachCount; reach++) {
+    const channel = channels[network.reachChannel[reach]];
+    if (hasWindow(channel)) {
+      const named = outside.has(channel.name) || outside.has(network.reachName(reach));
+      (named ? failing : windowed).push(reach);
+    }
+    if (!Number.isNaN(shear[reach])) sheared.push(reach);
+  }
+  const windows = failing.length + windowed.length > 0;
+  sheared.sort((a, b) => shear[b] - shear[a] || a - b);
+  const chosen = windows ? [...failing, ...windowed] : sheared;
+  return { rows: chosen.slice(0, count).map((reach) => part.reaches.at(reach)), windows, of: chosen.length };
+}
+
+const WINDOW_RULES = new Set(['shear-window', 'residence-window', 'flow-window']);
+
+/** Names of channels and reaches that a window finding speaks of. */
+export function outsideWindows({ findings }: ReportedCase): ReadonlySet<string> {
+  return new Set(
+    findings.findings.filter(({ rule }) => WINDOW_RULES.has(rule)).flatMap(({ names }) => names),
+  );
+}
+
+export function hasWindow({ settings }: Channel): boolean {
+  return (
+    settings !== null &&
+    (settings.wallShear !== null || settings.residenceTime !== null || settings.flow !== null)
+  );
+}
+
+/** The windows of a channel as text: "shear 0.05 to 0.5 Pa over 80 %". */
+export function windowTexts({ settings }: Channel, show: Show): readonly string[] {
+  if (settings === null) return [];
+  const { wallShear, residenceTime, flow, walls } = settings;
+  const texts: string[] = [];
+  if (wallShear !== null) {
+    const over = wallShear.over === null ? '' : ` over ${formatShare(wallShear.over)}`;
+    texts.push(
+      `shear ${rangeText('wall_shear', wallShear, show)}${over}${walls === 'all' ? ', all walls' : ''}`,
+    );
+  }
+  if (residenceTime !== null) texts.push(`time ${rangeText('residence_time', residenceTime, show)}`);
+  if (flow !== null) texts.push(`flow ${rangeText('flow', flow, show)}`);
+  return texts;
+}
+
+function rangeText(shown: Shown, { min, max }: Window, show: Show): string {
+  if (min === null) return `at most ${show.text(shown, max)}`;
+  if (max === null) return `at least ${show.text(shown, min)}`;
+  const unit = show.unit(shown, Math.max(Math.abs(min), Math.abs(max)));
+  return `${formatNumber(min / unit.si)} to ${formatNumber(max / unit.si)} ${unit.text}`;
+}

@@ -1,0 +1,252 @@
+import * as v from 'valibot';
+
+/**
+ * The one typed description of the result that leaves the program as JSON and CSV: the TypeScript types, the JSON Schema
+ * and the CSV columns all come from here. Keys carry their unit; a number that does not exist is null.
+ */
+
+const text = v.string();
+const count = (description: string) =>
+  v.pipe(v.number(), v.integer(), v.minValue(0), v.description(description));
+const number = (description: string) => v.pipe(v.number(), v.description(description));
+const maybe = (description: string) => v.pipe(v.nullable(v.number()), v.description(description));
+
+export const toolSchema = v.strictObject({
+  name: text,
+  version: text,
+  result_version: v.pipe(v.literal(1), v.description('Version of this format')),
+});
+
+export const layoutSchema = v.strictObject({
+  file: v.pipe(text, v.description('File name of the layout')),
+  sha256: v.pipe(text, v.regex(/^[0-9a-f]{64}$/)),
+  width_mm: maybe('Width of the drawing'),
+  height_mm: maybe('Height of the drawing'),
+  unit_mm: number('Millimetres per unit of the drawing'),
+  ignored: v.pipe(v.record(text, count('How many')), v.description('What was drawn and not read, by kind')),
+});
+
+export const runSheetSchema = v.nullable(
+  v.strictObject({ file: text, sha256: v.pipe(text, v.regex(/^[0-9a-f]{64}$/)) }),
+);
+
+export const fluidSchema = v.strictObject({
+  name: text,
+  temperature_c: number('Temperature in the chip, degrees Celsius'),
+  viscosity_pa_s: number('Dynamic viscosity'),
+  density_kg_m3: number('Density'),
+});
+
+export const verdictSchema = v.pipe(
+  v.picklist(['ready', 'hold']),
+  v.description('ready: no blocker; hold: at least one. Read it with the counts'),
+);
+
+export const countsSchema = v.strictObject({
+  channels: count('Channels with a width'),
+  ports: count('Ports'),
+  nodes: count('Nodes of the network'),
+  reaches: count('Reaches of the network'),
+  segments: count('Segments of the network'),
+  blockers: count('Findings that hold the chip'),
+  cautions: count('Findings to weigh'),
+  notes: count('Findings to know'),
+  accepted: count('Findings that someone has taken on in the run sheet'),
+  rules_not_run: count('Rules that could not be checked'),
+});
+
+export const portSchema = v.strictObject({
+  name: text,
+  x_mm: number('Centre, drawing coordinates in mm'),
+  y_mm: number('Centre, drawing coordinates in mm, y down'),
+  diameter_mm: number('Diameter of the hole'),
+  condition: v.picklist(['pressure', 'flow', 'head', 'open', 'sealed', 'unset']),
+  pressure_pa: maybe('Gauge pressure in the chip at the port'),
+  supply_pressure_pa: maybe('Gauge pressure at the far end of the tubing, or the port without tubing'),
+  flow_m3_s: maybe('Flow into the chip; negative leaves it'),
+  tubing_volume_m3: maybe('Volume of all tubing pieces; null without tubing'),
+  tubing_time_s: maybe('Tubing volume over flow; null without tubing or flow'),
+  joint_flow_share: maybe('How far joints that were not resolved could move the flow, as a share of it'),
+});
+
+export const nodeSchema = v.strictObject({
+  name: text,
+  kind: v.picklist(['port', 'junction', 'end', 'step']),
+  x_mm: number('Drawing coordinates in mm'),
+  y_mm: number('Drawing coordinates in mm, y down'),
+  pressure_pa: maybe('Gauge pressure'),
+});
+
+export const reachSchema = v.strictObject({
+  name: text,
+  channel: text,
+  layer: text,
+  from: v.pipe(text, v.description('Node at the start, in drawn direction')),
+  to: v.pipe(text, v.description('Node at the end, in drawn direction')),
+  width_m: maybe('Width of the rectangular duct'),
+  depth_m: maybe('Depth of the rectangular duct'),
+  drawn_length_m: number('Centreline length between the nodes, wells left out'),
+  length_m: number('Duct length: what resists flow after the joining rules'),
+  joint_length_m: number('Signed length that resolved joints add, within length_m'),
+  resistance_pa_s_m3: maybe('Pressure drop per flow'),
+  flow_m3_s: maybe('Flow, positive from → to'),
+  pressure_drop_pa: maybe('Pressure at from minus pressure at to'),
+  mean_velocity_m_s: maybe('Flow over cross-section, magnitude'),
+  peak_velocity_m_s: maybe('Velocity on the axis, magnitude'),
+  reynolds: maybe('Reynolds number on the hydraulic diameter'),
+  dean: maybe('Dean number at the tightest bend; null on a straight reach'),
+  entrance_length_m: maybe('Length over which the velocity profile develops'),
+  wall_shear_floor_mean_pa: maybe('Wall shear on the floor, mean over its width'),
+  wall_shear_floor_peak_pa: maybe('Wall shear on the floor, in its middle'),
+  wall_shear_side_mean_pa: maybe('Wall shear on a side, mean over its height'),
+  wall_shear_side_peak_pa: maybe('Wall shear on a side, in its middle'),
+  floor_share_inside_window: maybe(
+    'Share of the floor width whose shear lies in the wall_shear window; null without window',
+  ),
+  residence_time_s: maybe('Volume over flow'),
+  fastest_time_s: maybe('Length over peak velocity'),
+  volume_m3: maybe('Width × depth × length'),
+});
+
+export const segmentSchema = v.strictObject({
+  name: text,
+  reach: text,
+  x1_mm: number('Start, drawing coordinates in mm'),
+  y1_mm: number('Start, drawing coordinates in mm, y down'),
+  x2_mm: number('End, drawing coordinates in mm'),
+  y2_mm: number('End, drawing coordinates in mm, y down'),
+  length_m: number('Duct length'),
+  resistance_pa_s_m3: maybe('Pressure drop per flow'),
+  pressure_drop_pa: maybe('Pressure at the start minus pressure at the end'),
+  wall_shear_floor_mean_pa: maybe('Wall shear on the floor, mean over its width'),
+  wall_shear_floor_peak_pa: maybe('Wall shear on the floor, in its middle'),
+  residence_time_s: maybe('Volume over flow'),
+});
+
+export const findingSchema = v.strictObject({
+  rule: text,
+  severity: v.picklist(['blocker', 'caution', 'note']),
+  message: text,
+  fix: text,
+  x_mm: maybe('Place, drawing coordinates in mm'),
+  y_mm: maybe('Place, drawing coordinates in mm, y down'),
+  names: v.array(text),
+  measured: maybe('In the unit given'),
+  limit: maybe('In the unit given'),
+  unit: v.nullable(text),
+  accepted: v.nullable(
+    v.strictObject({
+      because: text,
+      by: text,
+      on: text,
+      up_to: maybe('Ceiling up to which it is accepted, in the unit given'),
+    }),
+  ),
+});
+
+export const notRunSchema = v.strictObject({ rule: text, why: text });
+
+export const balanceSchema = v.strictObject({
+  worst_imbalance: v.pipe(
+    v.number(),
+    v.description('Largest |ΣQ| at an inner node, relative to what flows through it'),
+  ),
+  worst_node: v.nullable(text),
+});
+
+export const pumpSchema = v.strictObject({
+  targets: v.array(
+    v.strictObject({
+      channel: v.exactOptional(text),
+      port: v.exactOptional(text),
+      node: v.exactOptional(text),
+      reach: v.nullable(text),
+      quantity: v.picklist(['flow', 'wall_shear', 'velocity', 'residence_time', 'pressure']),
+      at: v.nullable(v.picklist(['mean', 'peak'])),
+      wanted: v.union([
+        v.number(),
+        v.strictObject({ min: v.nullable(v.number()), max: v.nullable(v.number()) }),
+      ]),
+      reached: v.nullable(v.number()),
+      unit: text,
+      by: text,
+    }),
+  ),
+  settings: v.array(
+    v.strictObject({
+      port: text,
+      pressure_pa: maybe('In the chip at the port'),
+      supply_pressure_pa: maybe('At the far end of the tubing'),
+      flow_m3_s: maybe('Into the chip'),
+      within_limits: v.nullable(v.boolean()),
+    }),
+  ),
+});
+
+export const spreadSchema = v.strictObject({
+  draws: count('Draws in the sample'),
+  seed: v.pipe(v.number(), v.integer()),
+  outputs: v.array(
+    v.strictObject({
+      name: text,
+      quantity: text,
+      unit: text,
+      nominal: v.nullable(v.number()),
+      mean: v.nullable(v.number()),
+      sd: v.nullable(v.number()),
+      p2_5: v.nullable(v.number()),
+      p97_5: v.nullable(v.number()),
+      linear_sd: v.nullable(v.number()),
+      shares: v.record(text, v.number()),
+    }),
+  ),
+  yield: v.nullable(v.number()),
+  yield_low: v.nullable(v.number()),
+  yield_high: v.nullable(v.number()),
+});
+
+/** What concerns one case: everything but tool, layout and run sheet. */
+const casePart = {
+  fluid: fluidSchema,
+  verdict: verdictSchema,
+  counts: countsSchema,
+  ports: v.array(portSchema),
+  nodes: v.exactOptional(v.array(nodeSchema)),
+  reaches: v.exactOptional(v.array(reachSchema)),
+  segments: v.exactOptional(v.array(segmentSchema)),
+  findings: v.array(findingSchema),
+  not_run: v.array(notRunSchema),
+  balance: balanceSchema,
+  pump: v.exactOptional(pumpSchema),
+  spread: v.exactOptional(spreadSchema),
+};
+
+const head = { tool: toolSchema, layout: layoutSchema, run_sheet: runSheetSchema };
+
+export const singleSchema = v.strictObject({ ...head, ...casePart });
+export const casesSchema = v.strictObject({
+  ...head,
+  verdict: verdictSchema,
+  cases: v.array(v.strictObject({ case: text, ...casePart })),
+});
+/** The JSON document, with or without cases. `nodes`, `reaches`, `segments` are there as `--detail` asks. */
+export const resultSchema = v.union([singleSchema, casesSchema]);
+
+export type ToolRow = Readonly<v.InferOutput<typeof toolSchema>>;
+export type LayoutRow = Readonly<v.InferOutput<typeof layoutSchema>>;
+export type RunSheetRow = Readonly<v.InferOutput<typeof runSheetSchema>>;
+export type FluidRow = Readonly<v.InferOutput<typeof fluidSchema>>;
+export type CountsRow = Readonly<v.InferOutput<typeof countsSchema>>;
+export type PortRow = Readonly<v.InferOutput<typeof portSchema>>;
+export type NodeRow = Readonly<v.InferOutput<typeof nodeSchema>>;
+export type ReachRow = Readonly<v.InferOutput<typeof reachSchema>>;
+export type SegmentRow = Readonly<v.InferOutput<typeof segmentSchema>>;
+export type FindingRow = Readonly<v.InferOutput<typeof findingSchema>>;
+export type NotRunRow = Readonly<v.InferOutput<typeof notRunSchema>>;
+export type BalanceRow = Readonly<v.InferOutput<typeof balanceSchema>>;
+export type PumpPart = Readonly<v.InferOutput<typeof pumpSchema>>;
+export type SpreadPart = Readonly<v.InferOutput<typeof spreadSchema>>;
+
+/** CSV columns, in the order of the JSON keys. */
+export const reachColumns = Object.keys(reachSchema.entries) as readonly (keyof ReachRow)[]; // the entries' own keys
+export const segmentColumns = Object.keys(segmentSchema.entries) as readonly (keyof SegmentRow)[]; // likewise

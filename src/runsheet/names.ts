@@ -1,0 +1,37 @@
+/** How names of the run sheet are matched with names of the drawing. */
+
+/** Layer names match without regard to case and surrounding space: two that do have one key. */
+export function layerKey(name: string): string {
+  return name.trim().toLowerCase();
+}
+
+export function isPattern(name: string): boolean {
+  return name.includes('*');
+}
+
+/**
+ * Whether a name matches a pattern in which * stands for any run of characters, also none.
+ * Greedy with one point to fall back to: time is at most pattern × name, never exponential.
+ */
+export function matches(pattern: string, name: string): boolean {
+  let p = 0;
+  let n = 0;
+  let star = -1;
+  let resume = 0;
+  while (n < name.length) {
+    if (pattern[p] === '*') {
+      star = p++;
+      resume = n;
+    } else if (p < pattern.length && pattern[p] === name[n]) {
+      p++;
+      n++;
+    } else if (star >= 0) {
+      p = star + 1;
+      n = ++resume;
+    } else {
+      return false;
+    }
+  }
+  while (pattern[p] === '*') p++;
+  return p === pattern.length;
+}

@@ -1,0 +1,276 @@
+/**
+ * A run sheet's YAML as a tree of texts, maps and lists that know their lines, before any key is judged.
+ *
+ * All values are read as text (YAML's failsafe schema), so `007` stays `007` and `no` stays `no`. Anchors, aliases,
+ * tags and second documents are refused, nesting and size are bounded before anything recursive runs: an input of
+ * 1 MB costs a few seconds at worst.
+ */
+import {
+  Composer,
+  type CST,
+  type Document,
+  isAlias,
+  isMap,
+  isScalar,
+  isSeq,
+  Lexer,
+  LineCounter,
+  type ParsedNode,
+  Parser,
+  type YAMLError,
+} from 'yaml';
+import { InputError } from '../errors.ts';
+import { quote } from './quote.ts';
+
+export interface TextNode {
+  readonly kind: 'text';
+  readonly text: string;
+  readonly line: number;
+  /** Nothing was written: `ports:` with nothing after it. */
+  readonly empty: boolean;
+}
+export interface MapEntry {
+  readonly node: TreeNode;
+  /** Line of the key. */
+  readonly line: number;
+}
+export interface MapNode {
+  readonly kind: 'map';
+  readonly entries: ReadonlyMap<string, MapEntry>;
+  readonly line: number;
+}
+export interface ListNode {
+  readonly kind: 'list';
+  readonly items: readonly TreeNode[];
+  readonly line: number;
+}
+export type TreeNode = TextNode | MapNode | ListNode;
+
+/**
+ * Reads the YAML of a run sheet.
+ * @param text the whole file
+ * @param file as given on the command line, for messages
+ * @throws InputError naming file and line
+ */
+export function parseTree(text: string, file: string): MapNode {
+  if (Buffer.byteLength(text) > LARGEST_BYTES) {
+    throw new InputError(
+      file,
+      'is over the limit "run sheet size" of 1 MB; leave out what the chip does not need',
+    );
+  }
+  const lines = new LineCounter();
+  const document = compose(text, file, lines);
+  const at = (offset: number): number => Math.max(1, lines.linePos(offset).line);
+  refuseErrors(document, text, file, at);
+  const { contents } = document;
+  if (contents === null || (isScalar(contents) && contents.source === '' && contents.type === 'PLAIN')) {
+    return { kind: 'map', entries: new Map(), line: 1 };
+  }
+  const root = toTree(contents, file, at, null);
+  if (root.kind !== 'map') {
+    throw new InputError(
+      `${file}:${root.line}`,
+      'is not a run sheet; write keys with values, for example "depth: 50 um"',
+    );
+  }
+  return root;
+}
+
+/** The tree as plain data for a schema: strings, arrays and objects without a prototype. */
+export function toPlain(node: TreeNode): unknown {
+  switch (node.kind) {
+    case 'text':
+      return node.text;
+    case 'list':
+      return node.items.map(toPlain);
+    case 'map': {
+      const plain: Record<string, unknown> = Object.create(null);
+      for (const [key, entry] of node.entries) plain[key] = toPlain(entry.node);
+      return plain;
+    }
+    default:
+      return node satisfies never;
+  }
+}
+
+/** Line of the key or list item at a path, 1-based; null when it is not there. */
+export function lineAt(root: TreeNode, path: readonly (string | number)[]): number | null {
+  let node: TreeNode = root;
+  let line: number = root.line;
+  for (const step of path) {
+    if (node.kind === 'map') {
+      const entry: MapEntry | undefined = node.entries.get(String(step));
+      if (entry === undefined) return null;
+      node = entry.node;
+      line = entry.line;
+    } else if (node.kind === 'list') {
+      const item: TreeNode | undefined = node.items[Number(step)];
+      if (item === undefined) return null;
+      node = item;
+      line = item.line;
+    } else {
+      return null;
+    }
+  }
+  return line;
+}
+
+const LARGEST_BYTES = 1_000_000;
+/** A run sheet needs six levels. */
+const DEEPEST = 32;
+
+/**
+ * The composer of `yaml` recurses, and V8 aborts the process when a regular expression is first compiled on a stack
+ * that is nearly full; so the parser, which keeps a stack of its own, is stopped before it is deep.
+ */
+function compose(text: string, file: string, lines: LineCounter): Document.Parsed {
+  const parser = new Parser(lines.addNewLine);
+  const tokens: CST.Token[] = [];
+  lines.addNewLine(0);
+  for (const lexeme of new Lexer().lex(text)) {
+    for (const token of parser.next(lexeme)) tokens.push(token);
+    if (parser.stack.length > DEEPEST) {
+      const { line } = lines.linePos(parser.offset);
+      throw new InputError(
+        `${file}:${Math.max(1, line)}`,
+        `is nested deeper than the limit "run sheet depth" of ${DEEPEST} levels; a run sheet needs six`,
+      );
+    }
+  }
+  for (const token of parser.end()) tokens.push(token);
+  const options = { schema: 'failsafe', uniqueKeys: false, prettyErrors: false, logLevel: 'silent' } as const;
+  let first: Document.Parsed | null = null;
+  for (const document of new Composer(options).compose(tokens, true, text.length)) {
+    if (first === null) {
+      first = document;
+    } else {
+      const where = `${file}:${lines.linePos(document.range[0]).line}`;
+      throw new InputError(
+        where,
+        'starts a second document; a run sheet is one, so leave out the line "---"',
+      );
+    }
+  }
+  if (first === null) throw new InputError(file, 'could not be read as YAML');
+  return first;
+}
+
+type LineAt = (offset: number) => number;
+
+function refuseErrors(document: Document.Parsed, text: string, file: string, at: LineAt): void {
+  const first = [...document.errors].sort((a, b) => a.pos[0] - b.pos[0])[0];
+  if (first !== undefined) {
+    const line = at(first.pos[0]);
+    const source = text.split('\n', line)[line - 1] ?? '';
+    const sameLine = document.errors.filter((error) => at(error.pos[0]) === line);
+    throw new InputError(`${file}:${line}`, sayError(first, sameLine, source), { cause: first });
+  }
+  const tag = document.warnings.find((warning) => warning.code === 'TAG_RESOLVE_FAILED');
+  if (tag !== undefined) {
+    throw new InputError(
+      `${file}:${at(tag.pos[0])}`,
+      'has a YAML tag; leave out the word that starts with "!", or quote it',
+    );
+  }
+}
+
+function sayError(error: YAMLError, sameLine: readonly YAMLError[], source: string): string {
+  const star = /(?:^|[\s{[,])(\*[^\s:,\]}]*)/.exec(source.replace(/"[^"]*"|'[^']*'|#.*$/g, ''));
+  if (star !== null) return starMessage(star[1]!);
+  if (sameLine.some(({ code }) => code === 'TAB_AS_INDENT')) {
+    return 'is indented with a tab; YAML takes spaces only, so put two spaces instead';
+  }
+  const shown = quote(source.trim());
+  switch (error.code) {
+    case 'BLOCK_AS_IMPLICIT_KEY':
+    case 'MULTILINE_IMPLICIT_KEY':
+    case 'BAD_INDENT':
+    case 'MISSING_CHAR':
+    case 'UNEXPECTED_TOKEN':
+    case 'BAD_SCALAR_START':
+    case 'BAD_DQ_ESCAPE':
+      return `is not YAML at ${shown} (${lowerFirst(firstLine(error.message))}); check the indentation and brackets, and quote texts with ": " or special signs`;
+    default:
+      return `is not YAML at ${shown} (${lowerFirst(firstLine(error.message))})`;
+  }
+}
+
+function starMessage(star: string): string {
+  return `a name or pattern that starts with * must stand in quotes; write "${star.replace(/["\\]/g, '')}"`;
+}
+
+function firstLine(message: string): string {
+  return message.split(/[\n;]/, 1)[0]!.slice(0, 100);
+}
+
+function lowerFirst(message: string): string {
+  return message.charAt(0).toLowerCase() + message.slice(1);
+}
+
+function toTree(node: ParsedNode | null, file: string, at: LineAt, keyLine: number | null): TreeNode {
+  if (node === null) return { kind: 'text', text: '', line: keyLine ?? 1, empty: true };
+  const line = at(node.range[0]);
+  if (isAlias(node)) throw new InputError(`${file}:${line}`, starMessage(`*${node.source}`));
+  if (node.anchor !== undefined) {
+    throw new InputError(
+      `${file}:${line}`,
+      'has a YAML anchor (&); run sheets have none, so write the value out or quote the text',
+    );
+  }
+  if (isScalar(node)) {
+    const text = String(node.value ?? '');
+    return {
+      kind: 'text',
+      text,
+      line: text === '' ? (keyLine ?? line) : line,
+      empty: text === '' && node.type === 'PLAIN',
+    };
+  }
+  if (isSeq(node)) {
+    const items = node.items.map((item) => toTree(item, file, at, line));
+    return { kind: 'list', items, line };
+  }
+  if (isMap(node)) {
+    const entries = new Map<string, MapEntry>();
+    for (const { key, value } of node.items) {
+      const read = keyOf(key, file, at, line);
+      const earlier = entries.get(read.text);
+      if (earlier !== undefined) {
+        throw new InputError(
+          `${file}:${read.line}`,
+          `key ${quote(read.text)} is there twice (first in line ${earlier.line}); keep one of them`,
+        );
+      }
+      entries.set(read.text, { node: toTree(value, file, at, read.line), line: read.line });
+    }
+    return { kind: 'map', entries, line };
+  }
+  return node satisfies never;
+}
+
+function keyOf(
+  key: ParsedNode | null,
+  file: string,
+  at: LineAt,
+  mapLine: number,
+): { text: string; line: number } {
+  if (key === null) throw new InputError(`${file}:${mapLine}`, 'has a value without a key before its ":"');
+  const line = at(key.range[0]);
+  if (isAlias(key)) throw new InputError(`${file}:${line}`, starMessage(`*${key.source.replace(/:$/, '')}`));
+  if (!isScalar(key) || key.anchor !== undefined) {
+    throw new InputError(`${file}:${line}`, 'has a key that is not plain text; quote the key');
+  }
+  const text = String(key.value ?? '');
+  if (text === '') throw new InputError(`${file}:${line}`, 'has an empty key; give it a name');
+  if (FORBIDDEN.has(text)) {
+    throw new InputError(
+      `${file}:${line}`,
+      `${quote(text)} can't be a name in a run sheet; give it another name in the drawing`,
+    );
+  }
+  return { text, line };
+}
+
+/** Names that plain objects of the language treat specially. */
+const FORBIDDEN: ReadonlySet<string> = new Set(['__proto__', 'constructor', 'prototype']);

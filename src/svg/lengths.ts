@@ -1,0 +1,68 @@
+import { NUMBER, toNumber } from './numbers.ts';
+import { quoted, ValueError } from './value-error.ts';
+
+export interface Length {
+  readonly value: number;
+  /** Lower case; '' for a plain number. */
+  readonly unit: LengthUnit;
+}
+
+export type LengthUnit = '' | 'px' | 'mm' | 'cm' | 'q' | 'in' | 'pt' | 'pc' | 'em' | 'rem' | '%';
+
+/** CSS Values 4, 6.2: the CSS pixel is 1/96 inch. */
+export const PX_MM = 25.4 / 96;
+
+/** Millimetres per physical unit (CSS Values 4, 6.2), to be exact for drawings whose units are millimetres. */
+export const PHYSICAL_UNIT_MM: Readonly<Partial<Record<LengthUnit, number>>> = {
+  mm: 1,
+  cm: 10,
+  q: 0.25,
+  in: 25.4,
+  pt: 25.4 / 72,
+  pc: 25.4 / 6,
+};
+
+const LENGTH = new RegExp(`^(${NUMBER})(px|mm|cm|q|in|pt|pc|r?em|%)?$`, 'i');
+
+/** A font's em where no font is read: CSS's initial font size. */
+const EM_PX = 16;
+
+/**
+ * `12`, `1.5e1mm`, `30%` → number and unit.
+ * @throws ValueError for anything else, also for numbers too large for a double.
+ */
+export function parseLength(text: string): Length {
+  const match = LENGTH.exec(text.trim());
+  const value = match === null ? Number.NaN : toNumber(match[1]);
+  if (match === null || Number.isNaN(value)) {
+    throw new ValueError(
+      `${quoted(text)} is no length; write a number, or one with mm, cm, in, pt, pc, px, Q, em or %`,
+    );
+  }
+  // The pattern admits only the units of LengthUnit.
+  return { value, unit: (match[2] ?? '').toLowerCase() as LengthUnit };
+}
+
+/**
+ * A length in user units (CSS pixels of the element's own coordinates).
+ * @param whole what 100 % stands for; null when the drawing does not say.
+ * @throws ValueError when a percentage has nothing to refer to.
+ */
+export function toUserUnits(length: Length, whole: number | null): number {
+  const { value, unit } = length;
+  if (unit === '' || unit === 'px') return value;
+  if (unit === 'em' || unit === 'rem') return value * EM_PX;
+  if (unit === '%') {
+    if (whole === null)
+      throw new ValueError(`${value}% of a drawing that states no size; give the svg a viewBox`);
+    return (value / 100) * whole;
+  }
+  return (value * (PHYSICAL_UNIT_MM[unit] ?? Number.NaN)) / PX_MM;
+}
+
+/** Millimetres of a length on the outermost svg; null for a percentage. */
+export function toMillimetres(length: Length): number | null {
+  if (length.unit === '%') return null;
+  const physical = PHYSICAL_UNIT_MM[length.unit];
+  return physical !== undefined ? length.value * physical : toUserUnits(length, null) * PX_MM;
+}

@@ -1,0 +1,410 @@
+/**
+ * Walks the element tree as SVG renders it (SVG 2, 5 and 8): groups, nested svg, `use` and `symbol`, `switch`; what is not
+ * displayed is not there. Without recursion, because a file may nest deeper than the call stack reaches.
+ * Cost: linear in the elements drawn; `use` may draw one element often, so the drawn elements are counted and bounded.
+ */
+import { InputError } from '../errors.ts';
+import type { Cascade, Specified } from './cascade.ts';
+import { parseLength, toUserUnits } from './lengths.ts';
+import { MAX_ELEMENTS, MAX_GROUP_NAMES, MAX_PATH_COMMANDS } from './limits.ts';
+import { multiply, translation } from './matrix.ts';
+import { drawnId, drawnName } from './names.ts';
+import { shapePath } from './shapes.ts';
+import {
+  addDisguises,
+  type Disguise,
+  type InheritedStyle,
+  inherit,
+  ownKeyword,
+  resolveStyle,
+} from './style.ts';
+import { parseTransform, parseTransformOrigin } from './transform.ts';
+import { attribute, prefixedAttribute, type XmlElement } from './tree.ts';
+import type { Group, Matrix, PathCommand, Shape, ShapeStyle, ShapeTag } from './types.ts';
+import { quoted, ValueError } from './value-error.ts';
+import { parseAspectRatio, parseViewBox, type Viewport, viewBoxTransform } from './viewport.ts';
+
+/** What an element is drawn in. */
+export interface Surroundings {
+  readonly toRoot: Matrix;
+  readonly viewport: Viewport | null;
+  readonly style: InheritedStyle;
+  readonly disguises: readonly Disguise[];
+}
+
+export interface Walked {
+  readonly shapes: readonly Shape[];
+  readonly unread: ReadonlyMap<string, number>;
+}
+
+/**
+ * Everything that the children of the outermost svg draw, in document order.
+ * @param byId the first element of each id.
+ * @throws InputError with line and element for a value that cannot be read, a `use` that draws itself, or a limit.
+ */
+export function walkDrawing(
+  root: XmlElement,
+  surroundings: Surroundings,
+  cascade: Cascade,
+  byId: ReadonlyMap<string, XmlElement>,
+  where: string,
+): Walked {
+  const walk = new Walk(cascade, byId, where);
+  walk.enterRoot(root, surroundings);
+  for (let frame = walk.top(); frame !== undefined; frame = walk.top()) {
+    if (frame.next < frame.elements.length) walk.enter(frame.elements[frame.next++], frame.context);
+    else walk.leave(frame);
+  }
+  return { shapes: walk.shapes, unread: walk.unread };
+}
+
+interface Context extends Surroundings {
+  readonly chain: GroupChain | null;
+  /** The element is drawn by this `use`, directly. */
+  readonly use: XmlElement | null;
+  /** Somewhere inside a `use`, where the same element may be drawn again. */
+  readonly repeated: boolean;
+}
+
+/** The enclosing groups that have a name or a depth, innermost first; listed once for all shapes in them. */
+interface GroupChain {
+  readonly group: Group;
+  readonly outer: GroupChain | null;
+  list: readonly Group[] | null;
+}
+
+interface Frame {
+  /** The open container; cannot be drawn again inside itself. */
+  readonly element: XmlElement;
+  readonly elements: readonly XmlElement[];
+  next: number;
+  readonly context: Context;
+}
+
+const SHAPE_TAGS: ReadonlySet<string> = new Set<ShapeTag>([
+  'path',
+  'line',
+  'polyline',
+  'polygon',
+  'rect',
+  'circle',
+  'ellipse',
+  'text',
+  'image',
+]);
+
+/** Elements that are never drawn where they stand (SVG 2, 5.1.4 and the descriptive elements): nothing is lost with them. */
+const NEVER_DRAWN: ReadonlySet<string> = new Set(
+  (
+    'defs symbol clipPath mask pattern marker linearGradient radialGradient meshgradient hatch solidcolor filter ' +
+    'style title desc metadata view cursor font font-face missing-glyph glyph color-profile'
+  ).split(' '),
+);
+
+/** Elements that draw or change something that is not read; each is counted under its own name. */
+const UNREAD: ReadonlySet<string> = new Set(
+  (
+    'foreignObject script animate animateTransform animateMotion animateColor set video audio iframe canvas ' +
+    'flowRoot mesh hatchpath'
+  ).split(' '),
+);
+
+/** What of an element is not read, as the key of the count; null when all of it is. */
+type PassedOver = string | null;
+
+const NO_GROUPS: readonly Group[] = [];
+
+class Walk {
+  readonly shapes: Shape[] = [];
+  readonly unread = new Map<string, number>();
+  readonly #cascade: Cascade;
+  readonly #byId: ReadonlyMap<string, XmlElement>;
+  readonly #where: string;
+  readonly #frames: Frame[] = [];
+  readonly #open = new Set<XmlElement>();
+  #visits = 0;
+  #commands = 0;
+  #groupNames = 0;
+  /** Paths of elements that `use` draws again, with the viewport that their percentages referred to. */
+  readonly #paths = new Map<
+    XmlElement,
+    { readonly viewport: Viewport | null; readonly path: readonly PathCommand[] }
+  >();
+  #lastStyle: { readonly key: readonly unknown[]; readonly style: ShapeStyle } | null = null;
+
+  constructor(cascade: Cascade, byId: ReadonlyMap<string, XmlElement>, where: string) {
+    this.#cascade = cascade;
+    this.#byId = byId;
+    this.#where = where;
+  }
+
+  top(): Frame | undefined {
+    return this.#frames.at(-1);
+  }
+
+  enterRoot(root: XmlElement, surroundings: Surroundings): void {
+    const depth = attribute(root, 'data-depth') ?? null;
+    const chain =
+      depth === null ? null : { group: { name: null, dataDepth: depth }, outer: null, list: null };
+    this.#push(root, root.children, { ...surroundings, chain, use: null, repeated: false });
+  }
+
+  leave(frame: Frame): void {
+    this.#frames.pop();
+    this.#open.delete(frame.element);
+  }
+
+  enter(element: XmlElement, context: Context): void {
+    this.#visit(1, element);
+    if (!element.isSvg) return;
+    try {
+      const passedOver = this.#draw(element, context);
+      if (passedOver !== null) this.unread.set(passedOver, (this.unread.get(passedOver) ?? 0) + 1);
+    } catch (cause) {
+      if (!(cause instanceof ValueError)) throw cause;
+      throw this.#fault(element, cause.message, cause);
+    }
+  }
+
+  #draw(element: XmlElement, context: Context): PassedOver {
+    const { name } = element;
+    if (UNREAD.has(name)) return name;
+    const isSymbolInUse = name === 'symbol' && context.use !== null;
+    if (NEVER_DRAWN.has(name) && !isSymbolInUse) return null;
+    const isShape = SHAPE_TAGS.has(name);
+    const isContainer = name === 'g' || name === 'a' || name === 'svg' || name === 'switch' || name === 'use';
+    if (!isShape && !isContainer && !isSymbolInUse) return 'unknown element';
+
+    const css = this.#cascade.css(element);
+    const specified = this.#cascade.specified(element, css);
+    if (ownKeyword(specified, 'display', 'inline') === 'none') return null;
+    const style = inherit(context.style, specified);
+    const toRoot = multiply(context.toRoot, ownTransform(specified, context.viewport));
+    if (!toRoot.every(Number.isFinite)) throw new ValueError('its transforms together are too large');
+    if (toRoot[0] * toRoot[3] - toRoot[1] * toRoot[2] === 0) return 'shape flattened by its transform';
+    const disguises = addDisguises(context.disguises, specified);
+    const inner: Context = { ...context, toRoot, style, disguises };
+    // SHAPE_TAGS holds ShapeTags only.
+    if (isShape) return this.#drawShape(element, name as ShapeTag, css, specified, inner);
+    return this.#drawContainer(element, css, inner);
+  }
+
+  #drawShape(
+    element: XmlElement,
+    tag: ShapeTag,
+    css: Specified,
+    specified: Specified,
+    context: Context,
+  ): PassedOver {
+    const visibility = context.style.visibility.toLowerCase();
+    if (visibility === 'hidden' || visibility === 'collapse') return null;
+    const path = this.#pathOf(element, tag, css, context);
+    if (path.length === 0 && tag !== 'text' && tag !== 'image') return 'shape without size';
+    this.#commands += path.length;
+    if (this.#commands > MAX_PATH_COMMANDS) {
+      throw this.#fault(
+        element,
+        `the drawing has more than ${MAX_PATH_COMMANDS} path commands (the limit); split it`,
+      );
+    }
+    const { use } = context;
+    this.shapes.push({
+      tag,
+      ordinal: this.shapes.length,
+      // A shape drawn by `use` goes by the name that the use was given, if any: each copy can have its own.
+      name: (use && drawnName(use)) ?? drawnName(element),
+      id: (use && drawnId(use)) ?? drawnId(element),
+      groups: this.#groupsOf(context.chain, element),
+      dataChannel: [element, use].some((one) => one !== null && attribute(one, 'data-channel') !== undefined),
+      dataDepth: (use && attribute(use, 'data-depth')) ?? attribute(element, 'data-depth') ?? null,
+      toRoot: context.toRoot,
+      path,
+      style: this.#styleOf(tag, specified, context),
+    });
+    return null;
+  }
+
+  #drawContainer(element: XmlElement, css: Specified, context: Context): PassedOver {
+    const { name } = element;
+    if (name === 'use') return this.#drawUse(element, css, context);
+    if (name === 'svg' || name === 'symbol') return this.#drawViewport(element, css, context);
+    const elements = name === 'switch' ? this.#chosen(element) : element.children;
+    this.#push(element, elements, { ...context, use: null, chain: extend(context.chain, element) });
+    return null;
+  }
+
+  /** The first child that can be drawn here; one that needs an extension (an editor's private data) cannot. */
+  #chosen(element: XmlElement): readonly XmlElement[] {
+    this.#visit(element.children.length, element);
+    const chosen = element.children.find(
+      (child) =>
+        child.isSvg &&
+        !NEVER_DRAWN.has(child.name) &&
+        child.name !== 'foreignObject' &&
+        !attribute(child, 'requiredExtensions')?.trim(),
+    );
+    return chosen === undefined ? [] : [chosen];
+  }
+
+  #drawUse(element: XmlElement, css: Specified, context: Context): PassedOver {
+    const href = (attribute(element, 'href') ?? prefixedAttribute(element, ':href') ?? '').trim();
+    if (!href.startsWith('#')) return href === '' ? 'use of nothing' : 'use of another file';
+    const target = this.#byId.get(href.slice(1)) ?? this.#byId.get(decodeFragment(href.slice(1)));
+    if (target === undefined) return 'use of nothing';
+    if (this.#open.has(target) || target === element) {
+      throw new ValueError(`it draws ${quoted(href)}, which it is part of; point href at another element`);
+    }
+    const x = side(element, css, 'x', context.viewport) ?? 0;
+    const y = side(element, css, 'y', context.viewport) ?? 0;
+    const isShape = SHAPE_TAGS.has(target.name);
+    // A use that draws one shape stands for the shape, and so is no group of its own.
+    const depth = attribute(element, 'data-depth') ?? null;
+    const chain = isShape ? context.chain : extend(context.chain, element, depth);
+    const toRoot = x === 0 && y === 0 ? context.toRoot : multiply(context.toRoot, translation(x, y));
+    this.#push(element, [target], { ...context, toRoot, chain, use: element, repeated: true });
+    return null;
+  }
+
+  #drawViewport(element: XmlElement, css: Specified, context: Context): PassedOver {
+    const { viewport, use } = context;
+    // SVG 2, 5.6.2: the width and height of a use replace those of the svg or symbol that it draws.
+    const useCss = use === null ? null : this.#cascade.css(use);
+    const size = (name: 'width' | 'height'): number | null => {
+      const given = (use && side(use, useCss, name, viewport)) ?? side(element, css, name, viewport);
+      if (given !== null && given < 0) throw new ValueError(`${name} is negative; a size is zero or more`);
+      return given ?? viewport?.[name] ?? null;
+    };
+    const x = side(element, css, 'x', viewport) ?? 0;
+    const y = side(element, css, 'y', viewport) ?? 0;
+    const width = size('width');
+    const height = size('height');
+    if (width === 0 || height === 0) return 'svg without size';
+    const viewBox = parseViewBox(attribute(element, 'viewBox'));
+    if (viewBox === 'disabled') return 'svg without size';
+    let inner: Matrix = translation(x, y);
+    let own: Viewport | null = width === null || height === null ? null : { width, height };
+    if (viewBox !== null) {
+      if (own === null)
+        throw new ValueError('it has a viewBox but no width and height, and neither has the drawing');
+      const aspect = parseAspectRatio(attribute(element, 'preserveAspectRatio'));
+      inner = viewBoxTransform(viewBox, aspect, { x, y, ...own });
+      own = viewBox;
+    }
+    const toRoot = multiply(context.toRoot, inner);
+    const chain = extend(context.chain, element);
+    this.#push(element, element.children, { ...context, toRoot, viewport: own, chain, use: null });
+    return null;
+  }
+
+  #push(element: XmlElement, elements: readonly XmlElement[], context: Context): void {
+    this.#open.add(element);
+    this.#frames.push({ element, elements, next: 0, context });
+  }
+
+  #pathOf(element: XmlElement, tag: ShapeTag, css: Specified, context: Context): readonly PathCommand[] {
+    const known = context.repeated ? this.#paths.get(element) : undefined;
+    if (known !== undefined && known.viewport === context.viewport) return known.path;
+    const path = shapePath(tag, (name) => css?.get(name) ?? attribute(element, name), context.viewport);
+    if (context.repeated) this.#paths.set(element, { viewport: context.viewport, path });
+    return path;
+  }
+
+  /** Shapes in a row mostly look the same: they share one object. */
+  #styleOf(tag: ShapeTag, specified: Specified, context: Context): ShapeStyle {
+    const own = specified?.get('vector-effect');
+    const key = [tag, context.style, context.disguises, context.viewport, own];
+    if (this.#lastStyle?.key.every((part, i) => part === key[i])) return this.#lastStyle.style;
+    const style = resolveStyle(tag, context.style, specified, context.disguises, context.viewport);
+    this.#lastStyle = { key, style };
+    return style;
+  }
+
+  #groupsOf(chain: GroupChain | null, element: XmlElement): readonly Group[] {
+    if (chain === null) return NO_GROUPS;
+    if (chain.list !== null) return chain.list;
+    const list: Group[] = [];
+    for (let link: GroupChain | null = chain; link !== null; link = link.outer) list.push(link.group);
+    this.#groupNames += list.length;
+    if (this.#groupNames > MAX_GROUP_NAMES) {
+      throw this.#fault(
+        element,
+        `its groups nest too deep: over ${MAX_GROUP_NAMES} group names (the limit); ungroup some`,
+      );
+    }
+    chain.list = list.reverse();
+    return chain.list;
+  }
+
+  #visit(count: number, element: XmlElement): void {
+    this.#visits += count;
+    if (this.#visits > MAX_ELEMENTS) {
+      throw this.#fault(
+        element,
+        `the drawing has more than ${MAX_ELEMENTS} elements once every use is followed (the limit); split it`,
+      );
+    }
+  }
+
+  #fault(element: XmlElement, what: string, cause?: unknown): InputError {
+    const name = drawnName(element);
+    const said = name === null ? `<${element.name}>` : `<${element.name}> ${quoted(name)}`;
+    return new InputError(`${this.#where}:${element.line}`, `${said}: ${what}`, { cause });
+  }
+}
+
+/** `transform` about `transform-origin` (CSS Transforms 1, 4). */
+function ownTransform(specified: Specified, viewport: Viewport | null): Matrix {
+  const text = specified?.get('transform') ?? 'none';
+  for (const property of ['translate', 'rotate', 'scale', 'zoom', 'offset-path']) {
+    const value = specified?.get(property);
+    if (value !== undefined && !/^(?:none|normal|initial|unset|1|100%)$/i.test(value)) {
+      throw new ValueError(
+        `the CSS property ${property}: ${quoted(value)} is not read; write it as transform`,
+      );
+    }
+  }
+  const matrix = parseTransform(
+    /^(?:initial|unset|revert|revert-layer)$/i.test(text) ? 'none' : text,
+    viewport,
+  );
+  const origin = specified?.get('transform-origin');
+  const box = ownKeyword(specified, 'transform-box', 'view-box');
+  if (text !== 'none' && box !== 'view-box') {
+    throw new ValueError(`transform-box: ${quoted(box)} is not read; write the transform without it`);
+  }
+  if (origin === undefined || text === 'none') return matrix;
+  const [x, y] = parseTransformOrigin(origin, viewport);
+  return multiply(multiply(translation(x, y), matrix), translation(-x, -y));
+}
+
+function extend(chain: GroupChain | null, element: XmlElement, depth?: string | null): GroupChain | null {
+  const name = drawnName(element);
+  const dataDepth = depth ?? attribute(element, 'data-depth') ?? null;
+  return name === null && dataDepth === null
+    ? chain
+    : { group: { name, dataDepth }, outer: chain, list: null };
+}
+
+/** A length of a `use` or nested svg; null when not given or `auto`. */
+function side(
+  element: XmlElement,
+  css: Specified,
+  name: 'x' | 'y' | 'width' | 'height',
+  viewport: Viewport | null,
+): number | null {
+  const text = (css?.get(name) ?? attribute(element, name))?.trim() ?? '';
+  if (text === '' || text.toLowerCase() === 'auto') return null;
+  return toUserUnits(
+    parseLength(text),
+    viewport?.[name === 'x' || name === 'width' ? 'width' : 'height'] ?? null,
+  );
+}
+
+function decodeFragment(fragment: string): string {
+  try {
+    return decodeURIComponent(fragment);
+  } catch {
+    // A stray % stands for itself; the fragment was already looked up as written.
+    return fragment;
+  }
+}

@@ -1,0 +1,228 @@
+import { describe, expect, it } from 'vitest';
+import type { Chip } from '../../src/chip/types.ts';
+import { buildNetwork } from '../../src/network/build.ts';
+import { bendK, crossK, mitreK, stepK, teeEqualK, teeIntoWideK } from '../../src/physics/joints.ts';
+import { type ChannelSpec, chipOf, type PortSpec } from './chip-of.ts';
+
+/** Depth of every duct here: 0.1 mm, so a duct 0.1 mm wide has aspect 1. */
+const W = 0.1;
+
+function resolved(channels: readonly ChannelSpec[], ports: readonly PortSpec[] = []) {
+  const chip: Chip = { ...chipOf(channels, ports), joints: 'resolved' };
+  const network = buildNetwork(chip);
+  const joint: Record<string, number> = {};
+  const duct: Record<string, number> = {};
+  const drawn: Record<string, number> = {};
+  const bound: Record<string, number> = {};
+  for (let r = 0; r < network.reachCount; r++) {
+    const name = network.reachName(r);
+    joint[name] = network.reachJointMm[r];
+    duct[name] = network.reachDuctMm[r];
+    drawn[name] = network.reachDrawnMm[r];
+    bound[name] = network.reachJointBoundMm[r];
+  }
+  const kinds = Object.fromEntries(network.joints.map(({ kind, count }) => [kind, count]));
+  return { joint, duct, drawn, bound, kinds, network };
+}
+
+const corner = (degrees: number, legs = 2): number[] => [
+  0,
+  0,
+  legs,
+  0,
+  legs + legs * Math.cos((degrees * Math.PI) / 180),
+  legs * Math.sin((degrees * Math.PI) / 180),
+];
+
+describe('corners', () => {
+  for (const degrees of [2, 30, 45, 90, 120]) {
+    it(`adds k(${degrees}°) of one width to a mitred corner, drawn in one stroke or two, either way round`, () => {
+      const { k } = mitreK(1, (degrees * Math.PI) / 180);
+      const line = corner(degrees);
+      const one = resolved([{ name: 'a', widthMm: W, lines: [line] }]);
+      expect(one.joint.a).toBeCloseTo(k * W, 9);
+      expect(one.duct.a - one.joint.a).toBeCloseTo(one.drawn.a, 12);
+      const back = resolved([
+        { name: 'a', widthMm: W, lines: [[...line.slice(4), ...line.slice(2, 4), ...line.slice(0, 2)]] },
+      ]);
+      expect(back.joint.a).toBeCloseTo(k * W, 9);
+      const two = resolved([
+        { name: 'a', widthMm: W, lines: [line.slice(0, 4)] },
+        { name: 'b', widthMm: W, lines: [line.slice(2)] },
+      ]);
+      expect(two.joint.a + two.joint.b).toBeCloseTo(k * W, 9);
+    });
+  }
+
+  it('computes nothing beyond 120° and says by how much it could be off', () => {
+    const { joint, bound, kinds } = resolved([{ name: 'a', widthMm: W, lines: [corner(130)] }]);
+    expect(joint.a).toBe(0);
+    expect(bound.a).toBeGreaterThan(0.03);
+    expect(kinds).toEqual({ 'corner not computed': 1 });
+  });
+
+  it('adds two mitres at 2 w of each other and none at 1.9 w', () => {
+    const uTurn = (gap: number): ChannelSpec => ({
+      name: 'a',
+      widthMm: W,
+      lines: [[0, 0, 2, 0, 2, gap, 0, gap]],
+    });
+    expect(resolved([uTurn(0.2)]).joint.a).toBeCloseTo(2 * mitreK(1, Math.PI / 2).k * W, 9);
+    const near = resolved([uTurn(0.19)]);
+    expect(near.joint.a).toBe(0);
+    expect(near.kinds).toEqual({ 'corner not computed': 2 });
+  });
+
+  it('needs room between a corner and a node', () => {
+    const side = (length: number): ChannelSpec[] => [
+      { name: 'main', widthMm: W, lines: [[-3, 0, 3, 0]] },
+      { name: 'side', widthMm: W, lines: [[0, 0, 0, length, 2, length]] },
+    ];
+    expect(resolved(side(0.2)).kinds).toEqual({ 'T of equal ducts': 1, 'mitred corner': 1 });
+    expect(resolved(side(0.15)).kinds).toEqual({ 'corner not computed': 1, 'junction not computed': 1 });
+  });
+});
+
+describe('bends', () => {
+  const arc = (radius: number, degrees: number, chords: number): ChannelSpec => {
+    const line = [0, 0, 1, 0];
+    const bends = [0];
+    for (let k = 1; k <= chords; k++) {
+      const t = (k / chords) * ((degrees * Math.PI) / 180);
+      line.push(1 + radius * Math.sin(t), radius * (1 - Math.cos(t)));
+      bends.push(radius);
+    }
+    return { name: 'a', widthMm: W, lines: [line] };
+  };
+  const withBends = (spec: ChannelSpec, radius: number) => {
+    const chip = { ...chipOf([spec]), joints: 'resolved' as const };
+    const bendRadius = Float64Array.from(chip.channels[0].centrelines[0].bendRadius, (_, k) =>
+      k === 0 ? 0 : radius,
+    );
+    const channels = [
+      { ...chip.channels[0], centrelines: [{ ...chip.channels[0].centrelines[0], bendRadius }] },
+    ];
+    const network = buildNetwork({ ...chip, channels });
+    return { joint: network.reachJointMm[0], kinds: network.joints.map(({ kind, count }) => [kind, count]) };
+  };
+  for (const radius of [0.1, 0.2, 0.5]) {
+    it(`adds the k of a 90° bend of radius ${radius / W} w, whatever number of chords it was cut into`, () => {
+      const k = bendK(1, radius / W, Math.PI / 2).k;
+      for (const chords of [16, 40]) {
+        const { joint, kinds } = withBends(arc(radius, 90, chords), radius);
+        expect(joint).toBeCloseTo(k * W, 9);
+        expect(kinds).toEqual([['bend', 1]]);
+      }
+    });
+  }
+  it('computes no bend tighter than its width', () => {
+    expect(withBends(arc(0.09, 90, 20), 0.09)).toEqual({ joint: 0, kinds: [['bend not computed', 1]] });
+  });
+});
+
+describe('junctions', () => {
+  const legs = (main: number, side: number, turned: number): ChannelSpec[] => {
+    const at = (angle: number): number[] => {
+      const rad = ((angle + turned) * Math.PI) / 180;
+      return [0, 0, 3 * Math.cos(rad), 3 * Math.sin(rad)];
+    };
+    return [
+      { name: 'a', widthMm: main, lines: [at(0)] },
+      { name: 'b', widthMm: main, lines: [at(180)] },
+      { name: 'side', widthMm: side, lines: [at(90)] },
+    ];
+  };
+
+  it('makes a star of a T of equal ducts, whichever leg is drawn as the main', () => {
+    const { main, side } = teeEqualK(1);
+    const separate = resolved(legs(W, W, 0)).joint;
+    expect(separate.a).toBeCloseTo(main * W, 12);
+    expect(separate.side).toBeCloseTo(side * W, 12);
+    const through = resolved([
+      { name: 'main', widthMm: W, lines: [[-3, 0, 3, 0]] },
+      { name: 'side', widthMm: W, lines: [[0, 3, 0, 0.02]] },
+    ]).joint;
+    expect(through['main:1']).toBeCloseTo(main * W, 12);
+    expect(through.side).toBeCloseTo(side * W, 12);
+    const bent = resolved([
+      { name: 'bent', widthMm: W, lines: [[-3, 0, 0, 0, 0, 3]] },
+      { name: 'rest', widthMm: W, lines: [[0, 0, 3, 0]] },
+    ]).joint;
+    expect(bent['bent:1']).toBeCloseTo(main * W, 12);
+    expect(bent['bent:2']).toBeCloseTo(side * W, 12);
+    expect(bent.rest).toBeCloseTo(main * W, 12);
+  });
+
+  it('runs a narrow side to the wall of a wide main', () => {
+    const k = teeIntoWideK(1, 4);
+    const { joint, duct, drawn } = resolved(legs(4 * W, W, 37));
+    expect(joint.a).toBeCloseTo(k.mainHalf * W, 12);
+    expect(joint.side).toBeCloseTo(k.side * W, 12);
+    expect(duct.side - joint.side).toBeCloseTo(drawn.side - 2 * W, 12);
+  });
+
+  it('computes a T within 5° of square and none beyond', () => {
+    const slanted = (degrees: number) =>
+      resolved([
+        { name: 'main', widthMm: W, lines: [[-3, 0, 3, 0]] },
+        {
+          name: 'side',
+          widthMm: W,
+          lines: [[0, 0, 3 * Math.cos((degrees * Math.PI) / 180), 3 * Math.sin((degrees * Math.PI) / 180)]],
+        },
+      ]).kinds;
+    expect(slanted(86)).toEqual({ 'T of equal ducts': 1 });
+    expect(slanted(84)).toEqual({ 'junction not computed': 1 });
+  });
+
+  it('computes neither unequal depths nor a side wider than the main', () => {
+    const deep = legs(W, W, 0).map((spec) => (spec.name === 'side' ? { ...spec, depthMm: 0.2 } : spec));
+    expect(resolved(deep).kinds).toEqual({ 'junction not computed': 1 });
+    expect(resolved(legs(W, 1.1 * W, 0)).kinds).toEqual({ 'junction not computed': 1 });
+  });
+
+  it('passes from a narrow side to an equal one without a jump over 0.01 w', () => {
+    const near = resolved(legs(1.0001 * W, W, 0));
+    const equal = resolved(legs(W, W, 0));
+    for (const name of ['a', 'b', 'side']) {
+      expect(Math.abs(near.duct[name] - equal.duct[name])).toBeLessThan(0.01 * W);
+    }
+  });
+
+  it('adds the step to the narrow duct only', () => {
+    const { joint } = resolved([
+      { name: 'narrow', widthMm: W, lines: [[0, 0, 5, 0]] },
+      { name: 'wide', widthMm: 4 * W, lines: [[5, 0, 9, 0]] },
+    ]);
+    expect(joint.narrow).toBeCloseTo(stepK(1, 4).k * W, 12);
+    expect(joint.wide).toBe(0);
+  });
+
+  it('gives each arm of a cross of equal ducts the same', () => {
+    const { joint, kinds } = resolved([
+      { name: 'a', widthMm: W, lines: [[-3, 0, 3, 0]] },
+      { name: 'b', widthMm: W, lines: [[0, -3, 0, 3]] },
+    ]);
+    for (const name of ['a:1', 'a:2', 'b:1', 'b:2']) expect(joint[name]).toBeCloseTo(crossK(1).arm * W, 12);
+    expect(kinds).toEqual({ 'cross of equal ducts': 1 });
+  });
+
+  it('treats a dead end shorter than three widths as not computed', () => {
+    const stub = (length: number) =>
+      resolved([
+        { name: 'main', widthMm: W, lines: [[-3, 0, 3, 0]] },
+        { name: 'side', widthMm: W, lines: [[0, 0, 0, length]] },
+      ]).kinds;
+    expect(stub(0.31)).toEqual({ 'T of equal ducts': 1 });
+    expect(stub(0.29)).toEqual({ 'junction not computed': 1 });
+  });
+
+  it('counts wells as joints that nobody computed, with a bound and no length', () => {
+    const { joint, bound } = resolved(
+      [{ name: 'a', widthMm: W, lines: [[0, 0, 5, 0]] }],
+      [{ name: 'in', x: 0, y: 0, radiusMm: 0.5 }],
+    );
+    expect(joint.a).toBe(0);
+    expect(bound.a).toBeGreaterThan(0.05);
+  });
+});
