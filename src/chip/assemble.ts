@@ -1,7 +1,6 @@
 import type { Layout } from '../layout/types.ts';
 import type { RunSheet } from '../runsheet/types.ts';
 import { readChannels } from './channels.ts';
-import { refuse } from './complain.ts';
 import { DEFAULT_JOIN_WITHIN_MM, DEFAULT_JOINTS } from './defaults.ts';
 import { type DrawnEdge, findEdge } from './edge.ts';
 import { findFilledOutlines } from './filled.ts';
@@ -31,7 +30,7 @@ export interface ChipInput {
  * @throws InputError for a name that the drawing lacks, a contradiction between the two, or a value nobody can compute with
  */
 export function assembleChip({ layout, sheet, file, layoutSha256 }: ChipInput): Chip {
-  const joints = resolveJoints(sheet);
+  const joints = sheet?.joints ?? DEFAULT_JOINTS;
   const fluid = resolveFluid(sheet);
   const limits = resolveLimits(sheet);
   const joinWithinMm = sheet?.joinWithinMm ?? DEFAULT_JOIN_WITHIN_MM;
@@ -91,17 +90,6 @@ export function assembleChip({ layout, sheet, file, layoutSha256 }: ChipInput): 
     accept: sheet?.accept ?? [],
     sheet,
   };
-}
-
-function resolveJoints(sheet: RunSheet | null): Chip['joints'] {
-  if (sheet?.joints === 'resolved') {
-    refuse(
-      sheet,
-      ['joints'],
-      'joints: "resolved" joints are not available in this version; write "joints: centreline"',
-    );
-  }
-  return sheet?.joints ?? DEFAULT_JOINTS;
 }
 
 function inMm({ name, rings, sides }: DrawnEdge, unitMm: number): ChipEdge {

@@ -1,7 +1,7 @@
 /** What holds when neither the run sheet nor the drawing says otherwise. */
 
 /** How corners and junctions are counted. */
-export const DEFAULT_JOINTS: 'centreline' | 'resolved' = 'centreline';
+export const DEFAULT_JOINTS: 'centreline' | 'resolved' = 'resolved';
 
 /** 25 °C. */
 export const DEFAULT_TEMPERATURE_K = 298.15;

@@ -31,7 +31,7 @@ export function roundRing(ring: Float64Array): Circle | null {
   const isRound = farthest <= (1 + ROUNDNESS) * nearest;
   // An arc drawn there and back keeps its distance too, but holds no area.
   const isFull = Math.abs(doubleArea) / 2 >= 0.95 * Math.PI * circle.radius ** 2;
-  return isRound ? circle : null;
+  return isRound && isFull ? circle : null;
 }
 
 function fitCircle(ring: Float64Array): Circle | null {

@@ -62,8 +62,7 @@ export function reachesThatMatter(
   for (let reach = 0; reach < network.reachCount; reach++) {
     const channel = channels[network.reachChannel[reach]];
     if (hasWindow(channel)) {
-      const named = outside.has(channel.name) || outside.has(network.reachName(reach));
-      (named ? failing : windowed).push(reach);
+      (outside(channel.name, network.reachName(reach)) ? failing : windowed).push(reach);
     }
     if (!Number.isNaN(shear[reach])) sheared.push(reach);
   }
@@ -75,11 +74,24 @@ export function reachesThatMatter(
 
 const WINDOW_RULES = new Set(['shear-window', 'residence-window', 'flow-window']);
 
-/** Names of channels and reaches that a window finding speaks of. */
-export function outsideWindows({ findings }: ReportedCase): ReadonlySet<string> {
-  return new Set(
-    findings.findings.filter(({ rule }) => WINDOW_RULES.has(rule)).flatMap(({ names }) => names),
-  );
+/**
+ * Whether a window finding speaks of a reach. A finding names the reach to look at first, its channel, then other reaches at fault;
+ * one that names the channel first means all of it.
+ */
+export function outsideWindows({
+  findings,
+  network,
+}: ReportedCase): (channel: string, reach: string) => boolean {
+  const window = findings.findings.filter(({ rule }) => WINDOW_RULES.has(rule));
+  if (window.length === 0) return () => false;
+  const channelNames = new Set(network.chip.channels.map(({ name }) => name));
+  const channels = new Set<string>();
+  const reaches = new Set<string>();
+  for (const { names } of window) {
+    if (names.length > 0 && channelNames.has(names[0])) channels.add(names[0]);
+    for (const name of names) if (!channelNames.has(name)) reaches.add(name);
+  }
+  return (channel, reach) => channels.has(channel) || reaches.has(reach);
 }
 
 export function hasWindow({ settings }: Channel): boolean {

@@ -111,7 +111,7 @@ function channelLines(one: ReportedCase, width: number, paint: Paint): string[] 
       show.text('residence_time', row.residence_time_s),
       channel === undefined
         ? ''
-        : `${outside.has(row.channel) || outside.has(row.name) ? 'outside: ' : ''}${windowTexts(channel, show).join('; ')}`,
+        : `${outside(row.channel, row.name) ? 'outside: ' : ''}${windowTexts(channel, show).join('; ')}`,
     ];
   });
   return [

@@ -27,7 +27,13 @@ const rows: Row[] = readFileSync(new URL('joints.csv', import.meta.url), 'utf8')
   .slice(1)
   .map((line) => {
     const [name, variant, aspect, k, uncertainty] = line.split(',');
-    return { name, variant, aspect: aspect === 'inf' ? Infinity : Number(aspect), k: Number(k), uncertainty: Number(uncertainty) };
+    return {
+      name,
+      variant,
+      aspect: aspect === 'inf' ? Infinity : Number(aspect),
+      k: Number(k),
+      uncertainty: Number(uncertainty),
+    };
   });
 
 /** Width of the narrow duct, mm, and the length of every leg from the meeting point to its port's rim. */
@@ -50,7 +56,11 @@ interface Leg {
   readonly path?: string;
 }
 
-async function flowOf(aspect: number, legs: readonly Leg[], conditions: Record<string, string>): Promise<Analysis> {
+async function flowOf(
+  aspect: number,
+  legs: readonly Leg[],
+  conditions: Record<string, string>,
+): Promise<Analysis> {
   const strokes = legs.map(
     ({ name, width, end, path }) =>
       `<path id="${name}" stroke-width="${width}" d="${path ?? `M0 0 L${end[0]} ${end[1]}`}"/>`,
@@ -79,7 +89,8 @@ function perMm(width: number, aspect: number): number {
 }
 
 const P = '{ pressure: 1 kPa }';
-const port = (analysis: Analysis, leg: string): number => analysis.chip.ports.findIndex(({ name }) => name === `p-${leg}`);
+const port = (analysis: Analysis, leg: string): number =>
+  analysis.chip.ports.findIndex(({ name }) => name === `p-${leg}`);
 const inflow = (analysis: Analysis, leg: string): number => analysis.flow.portFlow[port(analysis, leg)];
 
 /** (Δp/Q − Σ r L)/(r w) for 1 kPa and the flow at one port. */
@@ -92,12 +103,21 @@ const WEST = [-LEG, 0] as const;
 const NORTH = [0, -LEG] as const;
 const SOUTH = [0, LEG] as const;
 
-async function corner(aspect: number, path: string, end: readonly [number, number], lengthMm: number): Promise<number> {
+async function corner(
+  aspect: number,
+  path: string,
+  end: readonly [number, number],
+  lengthMm: number,
+): Promise<number> {
   const strokes: Leg[] = [{ name: 'a', width: W, end, path }];
-  const svgLegs = await flowOf(aspect, [...strokes, { name: 'start', width: W, end: WEST, path: `M${-LEG} 0 h0.001` }], {
-    start: P,
-    a: 'open',
-  });
+  const svgLegs = await flowOf(
+    aspect,
+    [...strokes, { name: 'start', width: W, end: WEST, path: `M${-LEG} 0 h0.001` }],
+    {
+      start: P,
+      a: 'open',
+    },
+  );
   return kOf(inflow(svgLegs, 'start'), perMm(W, aspect) * lengthMm, aspect);
 }
 
@@ -119,7 +139,8 @@ async function measure({ name, variant, aspect }: Row): Promise<{ k: number; all
       return { k: await corner(aspect, `M${-LEG} 0H0L${c} ${c}`, [c, c], 2 * LEG), allowed: 0 };
     }
     case '3_uturn_gap_w': {
-      const single = variant === 'total' ? 0 : 2 * (await corner(aspect, `M${-LEG} 0H0V${LEG}`, SOUTH, 2 * LEG));
+      const single =
+        variant === 'total' ? 0 : 2 * (await corner(aspect, `M${-LEG} 0H0V${LEG}`, SOUTH, 2 * LEG));
       const gap = 2 * W;
       const analysis = await uTurn(aspect, gap);
       // Two mitres 2w apart add up to 0.005 w (as stated with the table).
@@ -225,7 +246,9 @@ describe('every computed joint through a drawn layout and the whole program', ()
       for (const row of rows.filter(({ name, variant }) => `${name} ${variant}` === key)) {
         const { k, allowed } = await measure(row);
         // The table gives four digits: half a unit of the last.
-        expect(Math.abs(k - row.k), `a = ${row.aspect}: ${k} for ${row.k}`).toBeLessThanOrEqual(row.uncertainty + allowed + 1e-4);
+        expect(Math.abs(k - row.k), `a = ${row.aspect}: ${k} for ${row.k}`).toBeLessThanOrEqual(
+          row.uncertainty + allowed + 1e-4,
+        );
       }
     });
   }

@@ -11,7 +11,13 @@ interface Glyph {
 
 interface GlyphRun {
   readonly glyphs: readonly Glyph[];
-  readonly positions: readonly { readonly xAdvance: number; readonly yAdvance: number; readonly xOffset: number; readonly yOffset: number; readonly advanceWidth: number }[];
+  readonly positions: readonly {
+    readonly xAdvance: number;
+    readonly yAdvance: number;
+    readonly xOffset: number;
+    readonly yOffset: number;
+    readonly advanceWidth: number;
+  }[];
   readonly advanceWidth: number;
 }
 
@@ -27,13 +33,21 @@ export function layOutPlainly(doc: PDFKit.PDFDocument): void {
   // private in pdfkit and missing in its types; a test pins that the short cut gives the shaper's glyphs
   const embedded = (doc as unknown as { readonly _font: EmbeddedFont })._font;
   const shaped = embedded.layout.bind(embedded);
-  const known = new Map<string, { readonly glyph: Glyph; readonly position: GlyphRun['positions'][number] }>();
-  const entryOf = (character: string): { readonly glyph: Glyph; readonly position: GlyphRun['positions'][number] } => {
+  const known = new Map<
+    string,
+    { readonly glyph: Glyph; readonly position: GlyphRun['positions'][number] }
+  >();
+  const entryOf = (
+    character: string,
+  ): { readonly glyph: Glyph; readonly position: GlyphRun['positions'][number] } => {
     let entry = known.get(character);
     if (entry === undefined) {
       const glyph = embedded.font.glyphForCodePoint(character.codePointAt(0) ?? 0);
       const advance = glyph.advanceWidth * embedded.scale;
-      entry = { glyph, position: { xAdvance: advance, yAdvance: 0, xOffset: 0, yOffset: 0, advanceWidth: advance } };
+      entry = {
+        glyph,
+        position: { xAdvance: advance, yAdvance: 0, xOffset: 0, yOffset: 0, advanceWidth: advance },
+      };
       known.set(character, entry);
     }
     return entry;
@@ -55,5 +69,7 @@ export function layOutPlainly(doc: PDFKit.PDFDocument): void {
 
 /** Latin without combining marks, Greek, Cyrillic, punctuation, arrows, mathematics: one glyph a character, left to right. */
 function isPlain(text: string): boolean {
-  return /^[\u0020-\u02FF\u0370-\u0482\u048A-\u052F\u1E00-\u1EFF\u2010-\u2027\u2030-\u205E\u2070-\u20BF\u2100-\u2BFF\uFFFD]*$/.test(text);
+  return /^[\u0020-\u02FF\u0370-\u0482\u048A-\u052F\u1E00-\u1EFF\u2010-\u2027\u2030-\u205E\u2070-\u20BF\u2100-\u2BFF\uFFFD]*$/.test(
+    text,
+  );
 }

@@ -144,7 +144,7 @@ function tableRows(
     const index = network.reachChannel[reach];
     const channel = network.chip.channels[index];
     if (index !== current && (hasWindow(channel) || network.channelReachCount[reach] > 1)) {
-      table.push({ kind: 'group', text: groupText(channel, row, outside, show) });
+      table.push({ kind: 'group', text: groupText(channel, row, show) });
     } else if (
       index !== current &&
       table.length > 0 &&
@@ -156,6 +156,7 @@ function tableRows(
     current = index;
     table.push({
       kind: 'cells',
+      weight: outside(row.channel, row.name) ? 'bold' : undefined,
       cells: [row.name, `${row.from} → ${row.to}`, ...numbers.map(({ text }) => text(row))],
     });
   });
@@ -170,8 +171,7 @@ function groupOf({ network }: ReportedCase, order: Int32Array, i: number): boole
   );
 }
 
-function groupText(channel: Channel, row: ReachRow, outside: ReadonlySet<string>, show: Show): string {
+function groupText(channel: Channel, row: ReachRow, show: Show): string {
   const windows = windowTexts(channel, show);
-  const verdict = windows.length === 0 ? '' : outside.has(channel.name) ? '; outside, see findings' : '';
-  return `${[`${row.channel}, layer ${row.layer === '' ? '(none)' : row.layer}`, ...windows].join('; ')}${verdict}`;
+  return `${[`${row.channel}, layer ${row.layer === '' ? '(none)' : row.layer}`, ...windows].join('; ')}`;
 }
