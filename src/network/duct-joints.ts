@@ -25,7 +25,15 @@ export function addDuctJoints(chip: Chip, reaches: Reaches, tally: JointTally): 
   for (let r = 0; r < reaches.count; r++) {
     const channel = chip.channels[reaches.channel[r]];
     if (Number.isNaN(channel.depthMm)) continue;
-    addCorners(reaches, joints, tally, r, channel.ductWidthMm, channel.ductWidthMm / channel.depthMm);
+    addCorners(
+      reaches,
+      joints,
+      tally,
+      r,
+      channel.ductWidthMm,
+      channel.ductWidthMm / channel.depthMm,
+      chip.joinWithinMm,
+    );
     addBends(reaches, joints, tally, r, channel.ductWidthMm, channel.ductWidthMm / channel.depthMm);
   }
   return joints;
@@ -38,6 +46,7 @@ function addCorners(
   r: number,
   width: number,
   aspect: number,
+  slackMm: number,
 ): void {
   const { segments } = reaches;
   const begin = reaches.firstSegment[r];
@@ -80,13 +89,15 @@ function addCorners(
       joints.reachMm[r] += mitreK(aspect, turn).k * width;
       continue;
     }
+    // A vertex within the slack of the reach's end is the node there, drawn a hair off.
+    if (waiting === null && sinceJoint <= slackMm) continue;
     settle(sinceJoint);
     waiting = { turn, behind: sinceJoint, segment: s };
     sinceJoint = 0;
   }
-  settle(
-    isLoop ? Number.POSITIVE_INFINITY : sinceJoint + (end > begin ? segmentLength(reaches, end - 1) : 0),
-  );
+  const rest = end > begin ? segmentLength(reaches, end - 1) : 0;
+  if (isLoop) settle(Number.POSITIVE_INFINITY);
+  else if (rest > slackMm) settle(rest);
 }
 
 /** A closed channel that no node interrupts. */

@@ -20,6 +20,9 @@ export function joinEnds(draft: Draft): void {
   }
 }
 
+/** An end this near is on the centreline; a carried-on piece as short as rounding would have no direction. */
+const ROUNDING_MM = 1e-9;
+
 interface Candidate {
   readonly centreline: number;
   piece: number;
@@ -61,9 +64,12 @@ function joinEnd(draft: Draft, end: number, met: Meetings): void {
     const place = carryOn(draft, end, candidate);
     ends.state[end] = END_JOINED;
     ends.joinedTo[end] = candidate.centreline;
-    ends.extension[end] = Math.hypot(place.x - ends.x[end], place.y - ends.y[end]);
-    ends.tipX[end] = place.x;
-    ends.tipY[end] = place.y;
+    const length = Math.hypot(place.x - ends.x[end], place.y - ends.y[end]);
+    if (length > ROUNDING_MM) {
+      ends.extension[end] = length;
+      ends.tipX[end] = place.x;
+      ends.tipY[end] = place.y;
+    }
     const node = nodes.add();
     marks.addMeeting(c, endPosition(draft, end), node);
     marks.addMeeting(candidate.centreline, place.s, node);

@@ -89,22 +89,27 @@ function toArm(draft: Draft, arcs: Arcs, side: number): Arm {
   };
 }
 
-/** Position of the first vertex (or end of the arc) beyond a position, walking away from the node. */
+/**
+ * Position of the first vertex (or end of the arc) more than the slack beyond a position, walking away from the node: a
+ * vertex nearer than that is the node itself, drawn a hair off.
+ */
 function nextVertex(draft: Draft, arcs: Arcs, arc: number, position: number, forward: boolean): number {
-  const { pieces } = draft;
+  const { pieces, slackMm } = draft;
   const c = arcs.centreline[arc];
   const length = pieces.centrelineLength[c];
   const limit = forward ? arcs.to[arc] : arcs.from[arc];
+  const beyond = forward ? position + slackMm : position - slackMm;
   if (forward) {
-    if (position < 0) return Math.min(0, limit);
-    const piece = pieceAt(pieces, c, position);
-    const next = piece + 1 < pieces.firstPiece[c + 1] ? pieces.start[piece + 1] : length;
-    return position >= length || next <= position ? limit : Math.min(next, limit);
+    if (beyond >= limit || beyond >= length) return limit;
+    if (beyond < 0) return Math.min(0, limit);
+    const piece = pieceAt(pieces, c, beyond);
+    return Math.min(pieces.start[piece] + pieces.length[piece], limit);
   }
-  if (position > length) return Math.max(length, limit);
-  let piece = pieceAt(pieces, c, position);
-  if (pieces.start[piece] >= position && piece > pieces.firstPiece[c]) piece--;
-  return position <= 0 ? limit : Math.max(pieces.start[piece], limit);
+  if (beyond <= limit || beyond <= 0) return limit;
+  if (beyond > length) return Math.max(length, limit);
+  const piece = pieceAt(pieces, c, beyond);
+  const vertex = pieces.start[piece] < beyond || piece === pieces.firstPiece[c] ? piece : piece - 1;
+  return Math.max(pieces.start[vertex], limit);
 }
 
 function markWell(
@@ -367,7 +372,8 @@ class RunLengths {
       if (walked > limit || (forward ? vertex >= end : vertex <= end)) return Number.POSITIVE_INFINITY;
       const next = forward ? piece + 1 : piece - 1;
       if (next < pieces.firstPiece[c] || next >= pieces.firstPiece[c + 1]) return Number.POSITIVE_INFINITY;
-      if (walked > 0 && cornerTurn(draft, Math.min(piece, next)) > ANGLE_TOLERANCE_RAD) return walked;
+      if (walked > draft.slackMm && cornerTurn(draft, Math.min(piece, next)) > ANGLE_TOLERANCE_RAD)
+        return walked;
       piece = next;
     }
   }

@@ -97,7 +97,7 @@ export function rootScale(get: (name: string) => string | undefined): RootScale 
       toRoot: [1, 0, 0, alongY / alongX, 0, 0],
     };
   }
-  const takesWidth = fit === 'meet' || align === 'none' ? alongX >= alongY : alongX >= alongY;
+  const takesWidth = fit === 'meet' || align === 'none' ? alongX <= alongY : alongX >= alongY;
   return {
     ...size,
     unitMm: takesWidth ? alongX : alongY,

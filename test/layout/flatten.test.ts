@@ -165,7 +165,7 @@ describe('subpaths', () => {
   });
 
   it('a path that has come back to its start to rounding gets no closing piece', () => {
-    const { points, closed } = only('M0.1 0l.7 0 0 .1-.7 0 0-.1000000000001z');
+    const { points, closed } = only('M0.1 0l.7 0 0 .1-.7 0 0-.1000000001z');
     expect(points.length / 2).toBe(5);
     expect(closed).toBe(true);
     expect([...points.slice(-2)]).toEqual([0.1, 0]);

@@ -30,6 +30,10 @@ describe('values stay the text that was written', () => {
     expect(one(`<path id='a"b\\' stroke="red" d="M0 0h1"/>`).name).toBe('a"b\\');
   });
 
+  it('a line break in a value is a space, a reference to one is a line break', () => {
+    expect(one('<path id="a\r\nb&#10;c" stroke="red" d="M0 0\nh1"/>').name).toBe('a b\nc');
+  });
+
   it('references are decoded in values and in titles', () => {
     expect(one('<path id="&#181;&amp;&lt;&#x394;&quot;" stroke="red" d="M0 0h1"/>').name).toBe('µ&<Δ"');
     expect(one('<path stroke="red" d="M0 0h1"><title> a &amp; b </title></path>').name).toBe('a & b');
