@@ -29,8 +29,6 @@ const { metafile } = await build({
   },
 });
 
-execFileSync(process.execPath, [typescript(), '--project', join(root, '.config/tsconfig.types.json')], { cwd: root, stdio: 'inherit' });
-
 mkdirSync(join(dist, 'fonts'));
 for (const name of ['DejaVuSans.ttf', 'DejaVuSans-Bold.ttf']) {
   copyFileSync(join(root, 'node_modules/dejavu-fonts-ttf/ttf', name), join(dist, 'fonts', name));
@@ -42,6 +40,7 @@ writeFileSync(join(dist, 'run-sheet.schema.json'), `${JSON.stringify(runSheetJso
 writeFileSync(join(dist, 'result.schema.json'), `${JSON.stringify(resultJsonSchema(), null, 2)}\n`);
 rmSync(join(dist, 'schemas.js'));
 writeLicences(metafile);
+execFileSync(process.execPath, [typescript(), '--project', join(root, '.config/tsconfig.types.json')], { cwd: root, stdio: 'inherit' });
 
 function typescript() {
   const require = createRequire(import.meta.url);

@@ -1,7 +1,7 @@
 import { nearestParameter } from '../geometry/segment.ts';
 import { isInPieceStrip } from '../geometry/strip.ts';
 import { type Draft, END_FREE, END_JOINED, endPiece, endPosition } from './draft.ts';
-import { reachInStrip, stripOf } from './strips.ts';
+import { reachInStrip, StripNeighbours } from './strips.ts';
 
 /**
  * Rule 3: a channel end inside another channel's strip (or its own, more than two widths back along it) joins it. The
@@ -13,10 +13,11 @@ import { reachInStrip, stripOf } from './strips.ts';
  */
 export function joinEnds(draft: Draft): void {
   const met = meetingsByCentreline(draft);
+  const strips = new StripNeighbours(draft, (c) => draft.pieces.centrelineChannel[c]);
   for (let c = 0; c < draft.pieces.centrelineCount; c++) {
     if (draft.pieces.centrelineClosed[c] === 1) continue;
-    joinEnd(draft, 2 * c, met);
-    joinEnd(draft, 2 * c + 1, met);
+    joinEnd(draft, 2 * c, met, strips);
+    joinEnd(draft, 2 * c + 1, met, strips);
   }
 }
 
@@ -46,13 +47,13 @@ function meetingsByCentreline(draft: Draft): Meetings {
   return { first, mark };
 }
 
-function joinEnd(draft: Draft, end: number, met: Meetings): void {
+function joinEnd(draft: Draft, end: number, met: Meetings, strips: StripNeighbours): void {
   const { ends, marks, nodes } = draft;
   if (ends.state[end] !== END_FREE) return;
   const c = end >> 1;
   for (const candidate of candidatesOf(draft, end)) {
     const last = lastMeeting(draft, end, candidate.centreline, met);
-    if (last !== null && hasStayedInside(draft, end, last, candidate.centreline)) {
+    if (last !== null && hasStayedInside(draft, end, last, candidate.centreline, strips)) {
       // Met to the last bit at the end itself: joined there. Met before: rule 4's.
       if (Math.abs(endPosition(draft, end) - last) <= draft.slackMm) {
         ends.state[end] = END_JOINED;
@@ -130,13 +131,18 @@ function lastMeeting(draft: Draft, end: number, other: number, met: Meetings): n
   return best;
 }
 
-function hasStayedInside(draft: Draft, end: number, from: number, other: number): boolean {
+function hasStayedInside(
+  draft: Draft,
+  end: number,
+  from: number,
+  other: number,
+  strips: StripNeighbours,
+): boolean {
   const length = Math.abs(endPosition(draft, end) - from);
   if (length <= draft.slackMm) return true;
-  return (
-    reachInStrip(draft, end >> 1, from, (end & 1) === 0 ? -1 : 1, stripOf(draft, other), null) >=
-    length - draft.slackMm
-  );
+  const direction = (end & 1) === 0 ? -1 : 1;
+  const channel = draft.pieces.centrelineChannel[other];
+  return reachInStrip(draft, end >> 1, from, direction, strips, channel, null) >= length - draft.slackMm;
 }
 
 /** The place on the candidate's centreline that the end joins. */

@@ -156,10 +156,7 @@ function classify(
     (first & 1) === 0 ? runs.arcs.from[first >> 1] : runs.arcs.to[first >> 1],
     at,
   );
-  if (
-    found !== null &&
-    found.parts.every((part) => runs.isLongEnough(part.arm.side, part.apartMm, part.wallMm))
-  ) {
+  if (found?.parts.every((part) => runs.isLongEnough(part.arm.side, part.apartMm, part.wallMm))) {
     let added = 0;
     let bound = 0;
     for (const { arm, lengthMm, boundMm } of found.parts) {

@@ -2,14 +2,45 @@ import { pieceAt } from '../geometry/pieces.ts';
 import { addStripStretches, coveredUpTo, type StripEnds } from '../geometry/strip.ts';
 import type { Draft } from './draft.ts';
 
-/** Says whether a piece belongs to the strip that is asked about. */
-export type StripTest = (piece: number) => boolean;
+/**
+ * The pieces near a piece, by the strip that they belong to. A strip is a key per centreline: its channel, or the first
+ * centreline of strips united by rule 5. A piece that thousands cross sorts its neighbours once and not at each question.
+ */
+export class StripNeighbours {
+  private readonly draft: Draft;
+  private readonly keyOf: (centreline: number) => number;
+  private readonly sorted = new Map<number, Map<number, number[]>>();
 
-/** The strip of one centreline's channel. */
-export function stripOf(draft: Draft, centreline: number): StripTest {
-  const channel = draft.pieces.centrelineChannel[centreline];
-  return (piece) => draft.pieces.channel[piece] === channel;
+  constructor(draft: Draft, keyOf: (centreline: number) => number) {
+    this.draft = draft;
+    this.keyOf = keyOf;
+  }
+
+  of(piece: number, key: number): readonly number[] {
+    const { near } = this.draft;
+    const count = near.firstPair[piece + 1] - near.firstPair[piece];
+    if (count <= FEW) return piecesNear(this.draft, piece).filter((other) => this.isOf(other, key));
+    let byKey = this.sorted.get(piece);
+    if (byKey === undefined) {
+      byKey = new Map();
+      for (const other of piecesNear(this.draft, piece)) {
+        const otherKey = this.keyOf(this.draft.pieces.centreline[other]);
+        const list = byKey.get(otherKey);
+        if (list === undefined) byKey.set(otherKey, [other]);
+        else list.push(other);
+      }
+      this.sorted.set(piece, byKey);
+    }
+    return byKey.get(key) ?? [];
+  }
+
+  isOf(piece: number, key: number): boolean {
+    return this.keyOf(this.draft.pieces.centreline[piece]) === key;
+  }
 }
+
+/** Up to so many neighbours a look at each costs less than sorting them. */
+const FEW = 32;
 
 /**
  * How far a centreline, walked from position `from` in the given direction, stays inside a strip without leaving it
@@ -20,7 +51,8 @@ export function reachInStrip(
   centreline: number,
   from: number,
   direction: 1 | -1,
-  isOfStrip: StripTest,
+  strip: StripNeighbours,
+  key: number,
   ends: StripEnds | null,
 ): number {
   const { pieces } = draft;
@@ -36,13 +68,12 @@ export function reachInStrip(
     const span = startEnd % 2 === 0 ? -from : from - length;
     const inside = coverage(
       draft,
-      piecesNearExtension(draft, startEnd),
+      piecesNearExtension(draft, startEnd).filter((piece) => strip.isOf(piece, key)),
       draft.ends.tipX[startEnd],
       draft.ends.tipY[startEnd],
       draft.ends.x[startEnd],
       draft.ends.y[startEnd],
       draft.ends.extension[startEnd] - span,
-      isOfStrip,
       ends,
     );
     walked = inside;
@@ -62,13 +93,12 @@ export function reachInStrip(
       : pieces.start[piece] + pieces.length[piece] - position;
     const inside = coverage(
       draft,
-      piecesNear(draft, piece),
+      strip.of(piece, key),
       forward ? pieces.x1[piece] : pieces.x2[piece],
       forward ? pieces.y1[piece] : pieces.y2[piece],
       forward ? pieces.x2[piece] : pieces.x1[piece],
       forward ? pieces.y2[piece] : pieces.y1[piece],
       offset,
-      isOfStrip,
       ends,
     );
     walked += inside;
@@ -91,14 +121,11 @@ function coverage(
   bx: number,
   by: number,
   offset: number,
-  isOfStrip: StripTest,
   ends: StripEnds | null,
 ): number {
   const stretches: number[] = [];
   for (const piece of near) {
-    if (isOfStrip(piece)) {
-      addStripStretches(stretches, draft.pieces, piece, ax, ay, bx, by, draft.slackMm, ends);
-    }
+    addStripStretches(stretches, draft.pieces, piece, ax, ay, bx, by, draft.slackMm, ends);
   }
   return Math.max(0, coveredUpTo(stretches, offset, draft.slackMm) - offset);
 }

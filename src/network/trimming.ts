@@ -4,7 +4,7 @@ import type { Draft } from './draft.ts';
 import { TRIM_BY_RULE, TRIM_TO_WALL } from './node-joints.ts';
 import type { Kept } from './overshoot.ts';
 import { type NodeStops, type Stops, stopsByNode } from './stops.ts';
-import { reachInStrip } from './strips.ts';
+import { reachInStrip, StripNeighbours } from './strips.ts';
 
 /** Stretches of centreline that count only in part: columns, sorted by centreline and position; stretches may overlap. */
 export interface Trims {
@@ -37,6 +37,7 @@ export function findTrims(
   const found: Trim[] = [];
   const memberStamp = new Int32Array(pieces.centrelineCount).fill(-1);
   const triedStamp = new Int32Array(pieces.centrelineCount).fill(-1);
+  const neighbours = new StripNeighbours(draft, (c) => strips.group[c]);
   let arm = 0;
 
   for (let node = 0; node + 1 < byNode.first.length; node++) {
@@ -48,13 +49,20 @@ export function findTrims(
       const stop = byNode.stop[m];
       const c = stops.centreline[stop];
       const closed = pieces.centrelineClosed[c] === 1;
-      if (closed || stops.from[stop] > kept.from[c]) trimArm(c, stops.from[stop], -1, node);
-      if (closed || stops.to[stop] < kept.to[c]) trimArm(c, stops.to[stop], 1, node);
+      if (closed || stops.from[stop] > kept.from[c]) trimArm(c, stops.from[stop], -1, node, begin, end);
+      if (closed || stops.to[stop] < kept.to[c]) trimArm(c, stops.to[stop], 1, node, begin, end);
     }
   }
   return { trims: toColumns(pieces.centrelineCount, found), strips: strips.ends };
 
-  function trimArm(c: number, position: number, direction: 1 | -1, node: number): void {
+  function trimArm(
+    c: number,
+    position: number,
+    direction: 1 | -1,
+    node: number,
+    begin: number,
+    end: number,
+  ): void {
     arm++;
     const own = strips.group[c];
     const tryStrip = (group: number): void => {
@@ -62,19 +70,18 @@ export function findTrims(
       triedStamp[group] = arm;
       const factor = trimFactor(draft, c, group);
       if (factor >= 1) return;
-      const length = reachInStrip(
-        draft,
-        c,
-        position,
-        direction,
-        (piece) => strips.group[pieces.centreline[piece]] === group,
-        strips.ends,
-      );
+      const length = reachInStrip(draft, c, position, direction, neighbours, group, strips.ends);
       if (length > 0) addTrim(c, position, direction, length, factor, resolved(node, factor));
     };
+    if (end - begin <= FEW_MEMBERS) {
+      for (let m = begin; m < end; m++) tryStrip(strips.group[stops.centreline[byNode.stop[m]]]);
+      return;
+    }
+    // Where many meet, only those near the arm can hold it.
     const onExtension = position < 0 ? 2 * c : position > pieces.centrelineLength[c] ? 2 * c + 1 : -1;
-    if (onExtension >= 0 && draft.ends.joinedTo[onExtension] >= 0)
+    if (onExtension >= 0 && draft.ends.joinedTo[onExtension] >= 0) {
       tryStrip(strips.group[draft.ends.joinedTo[onExtension]]);
+    }
     for (const piece of piecesAt(c, position, direction)) {
       for (let k = near.firstPair[piece]; k < near.firstPair[piece + 1]; k++) {
         const pair = near.pairOf[k];
@@ -121,6 +128,9 @@ export function findTrims(
     if (to > total) found.push({ c, from: 0, to: to - total, factorByRule, factorResolved });
   }
 }
+
+/** Up to so many stops at a node each is asked. */
+const FEW_MEMBERS = 16;
 
 function allEqual(draft: Draft, stops: Stops, byNode: NodeStops, begin: number, end: number): boolean {
   const first = channelAt(draft, stops, byNode.stop[begin]);
