@@ -1,5 +1,7 @@
 import { Command, CommanderError, Option } from 'commander';
 import { check } from './commands/check.ts';
+import { declarePump } from './commands/declare.ts';
+import { declareSpread } from './commands/declare-spread.ts';
 import { Interrupted, type Io, WriteError } from './commands/io.ts';
 import { FORMATS } from './commands/options.ts';
 import { InputError } from './errors.ts';
@@ -132,6 +134,8 @@ Examples:
 ${EXIT_CODES}`,
     )
     .action(async (layout: string, options) => finish(await check(layout, options, io)));
+  declarePump(program, io, finish, EXIT_CODES);
+  declareSpread(program, io, finish, EXIT_CODES);
 
   return program;
 }

@@ -5,6 +5,7 @@ import {
   waterDensity,
   waterViscosity,
 } from '../physics/fluid.ts';
+import { type KeyPath, pathText } from '../runsheet/path-text.ts';
 import type { FluidSpec, RunSheet } from '../runsheet/types.ts';
 import { refuse } from './complain.ts';
 import { DEFAULT_TEMPERATURE_K } from './defaults.ts';
@@ -46,6 +47,7 @@ function fluidOf(spec: FluidSpec, temperatureK: number, temperatureGiven: boolea
         densityKgM3: waterDensity(temperatureK),
         source: 'IAPWS SR6-08(2011)',
         viscosityAt: waterViscosity,
+        densityAt: waterDensity,
       };
     case 'custom':
       return {
@@ -67,6 +69,7 @@ function fluidOf(spec: FluidSpec, temperatureK: number, temperatureGiven: boolea
         source: 'viscosity: Cheng 2008; density: Volk & Kähler 2018',
         // The mixture keeps its mass fraction in warmer or colder tubing.
         viscosityAt: (kelvin) => glycerolViscosity(kelvin, mass),
+        densityAt: (kelvin) => glycerolDensity(kelvin, mass),
       };
     }
     default:
@@ -74,12 +77,11 @@ function fluidOf(spec: FluidSpec, temperatureK: number, temperatureGiven: boolea
   }
 }
 
-function known<T>(sheet: RunSheet, path: readonly (string | number)[], value: () => T): T {
+function known<T>(sheet: RunSheet, path: KeyPath, value: () => T): T {
   try {
     return value();
   } catch (error) {
     if (!(error instanceof RangeError)) throw error;
-    const key = path.map((step) => (typeof step === 'number' ? `[${step}]` : `.${step}`)).join('');
-    return refuse(sheet, path, `${key.slice(1)}: ${error.message}`, { cause: error });
+    return refuse(sheet, path, `${pathText(path)}: ${error.message}`, { cause: error });
   }
 }

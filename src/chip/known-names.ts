@@ -1,6 +1,7 @@
 import type { Layout } from '../layout/types.ts';
 import { isPattern, layerKey } from '../runsheet/names.ts';
 import { nearest } from '../runsheet/nearest.ts';
+import { type KeyPath, pathText } from '../runsheet/path-text.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { RunSheet } from '../runsheet/types.ts';
 import { refuse } from './complain.ts';
@@ -43,10 +44,10 @@ export function refuseUnknownNames(
   unmatchedChannels: readonly string[],
 ): void {
   const layerNames = [...names.layers.values()];
-  const layer = (path: Path, name: string): void => {
+  const layer = (path: KeyPath, name: string): void => {
     if (!names.layers.has(layerKey(name))) unknown(sheet, path, 'layer', name, layerNames, names);
   };
-  const port = (path: Path, name: string): void => {
+  const port = (path: KeyPath, name: string): void => {
     if (!names.ports.has(name)) unknown(sheet, path, 'port', name, names.ports, names);
   };
   if (sheet.portsLayer !== null) layer(['ports_layer'], sheet.portsLayer);
@@ -73,20 +74,15 @@ export function refuseUnknownNames(
   }
 }
 
-type Path = readonly (string | number)[];
-
 function unknown(
   sheet: RunSheet,
-  path: Path,
+  path: KeyPath,
   what: 'channel' | 'port' | 'layer',
   name: string,
   candidates: Iterable<string>,
   { isMade, setAside }: KnownNames,
 ): never {
-  const key = path
-    .map((step) => (typeof step === 'number' ? `[${step}]` : `.${plain(step)}`))
-    .join('')
-    .slice(1);
+  const key = pathText(path);
   if (isMade(name)) refuse(sheet, path, `${key}: ${madeUp(name)}`);
   const why = setAside.get(name);
   if (what !== 'layer' && why !== undefined) {
@@ -113,8 +109,4 @@ function listed(what: string, names: readonly string[]): string {
   if (names.length === 0) return `it has no named ${what}s`;
   const first = names.slice(0, 5).map(quote).join(', ');
   return `its ${what}s are ${first}${names.length > 5 ? ` and ${names.length - 5} more` : ''}`;
-}
-
-function plain(name: string): string {
-  return /^[\p{L}\p{N}_*-]{1,60}$/u.test(name) ? name : quote(name);
 }

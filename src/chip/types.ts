@@ -26,6 +26,8 @@ export interface Fluid {
   readonly source: string;
   /** Viscosity of the same fluid at another temperature (tubing); a custom fluid ignores it. */
   readonly viscosityAt: (temperatureK: number) => number;
+  /** Density of the same fluid at another temperature; left out where it does not change (a custom fluid). */
+  readonly densityAt?: (temperatureK: number) => number;
 }
 
 export interface ChipLayer {

@@ -2,6 +2,7 @@ import { isAbsolute, join } from 'node:path';
 import { writeReachesCsv, writeSegmentsCsv } from '../report/csv.ts';
 import { writeJson } from '../report/json.ts';
 import type { Report, ReportedCase } from '../report/report.ts';
+import { writeSpreadCsv } from '../report/spread-csv.ts';
 import type { Io } from './io.ts';
 import type { CheckOptions, Format } from './options.ts';
 import type { Progress } from './progress.ts';
@@ -47,13 +48,16 @@ async function toFiles(
       return [{ name: `${name}.json`, content: writeJson(report.result, options.detail) }];
     case 'csv':
       return report.cases.flatMap((one) => [
-        { name: `${caseName(name, one)}.reaches.csv`, content: writeReachesCsv(one.part.reaches) },
-        { name: `${caseName(name, one)}.segments.csv`, content: writeSegmentsCsv(one.part.segments) },
+        { name: `${caseFileName(name, one)}.reaches.csv`, content: writeReachesCsv(one.part.reaches) },
+        { name: `${caseFileName(name, one)}.segments.csv`, content: writeSegmentsCsv(one.part.segments) },
+        ...(one.part.spread === undefined
+          ? []
+          : [{ name: `${caseFileName(name, one)}.spread.csv`, content: writeSpreadCsv(one.part.spread) }]),
       ]);
     case 'svg': {
       const { svgPicture } = await import('../report/svg.ts');
       return report.cases.map((one) => ({
-        name: `${caseName(name, one)}.svg`,
+        name: `${caseFileName(name, one)}.svg`,
         content: [svgPicture(one, { quantity: options.colour })],
       }));
     }
@@ -75,7 +79,7 @@ async function toFiles(
 }
 
 /** One picture and table a case: `culture.seed.svg`. A case name is data, so only its harmless characters name a file. */
-function caseName(name: string, { name: caseText }: ReportedCase): string {
+export function caseFileName(name: string, { name: caseText }: ReportedCase): string {
   return caseText === null ? name : `${name}.${caseText.replace(/[^\p{L}\p{N}_-]+/gu, '_')}`;
 }
 

@@ -32,10 +32,20 @@ export function closestPoints(one: Line, two: Line): Closest {
       return { distanceMm: 0, x1: x, y1: y, x2: x, y2: y };
     }
   }
-  let best = fromPoint(ax, ay, two);
-  best = nearer(best, fromPoint(bx, by, two));
-  best = nearer(best, turned(fromPoint(cx, cy, one)));
-  return nearer(best, turned(fromPoint(dx, dy, one)));
+  // Not crossing: the nearest place is at one of the four ends.
+  const atA = nearestParameter(ax, ay, cx, cy, dx, dy);
+  const atB = nearestParameter(bx, by, cx, cy, dx, dy);
+  const atC = nearestParameter(cx, cy, ax, ay, bx, by);
+  const atD = nearestParameter(dx, dy, ax, ay, bx, by);
+  const fromA = Math.hypot(ax - cx - atA * vx, ay - cy - atA * vy);
+  const fromB = Math.hypot(bx - cx - atB * vx, by - cy - atB * vy);
+  const fromC = Math.hypot(cx - ax - atC * ux, cy - ay - atC * uy);
+  const fromD = Math.hypot(dx - ax - atD * ux, dy - ay - atD * uy);
+  const distanceMm = Math.min(fromA, fromB, fromC, fromD);
+  if (fromA === distanceMm) return { distanceMm, x1: ax, y1: ay, x2: cx + atA * vx, y2: cy + atA * vy };
+  if (fromB === distanceMm) return { distanceMm, x1: bx, y1: by, x2: cx + atB * vx, y2: cy + atB * vy };
+  if (fromC === distanceMm) return { distanceMm, x1: ax + atC * ux, y1: ay + atC * uy, x2: cx, y2: cy };
+  return { distanceMm, x1: ax + atD * ux, y1: ay + atD * uy, x2: dx, y2: dy };
 }
 
 /** The stretch [from, to] (mm along the line) that lies within a distance of another line; null when none does. */
@@ -49,36 +59,31 @@ export function stretchWithin(line: Line, other: Line, withinMm: number): readon
   // All points within a distance of a line are a convex area: a rectangle and two discs, and the stretch is one piece.
   let low = Number.POSITIVE_INFINITY;
   let high = Number.NEGATIVE_INFINITY;
-  const add = (from: number, to: number): void => {
-    const a = Math.max(0, from);
-    const b = Math.min(span, to);
-    if (a > b) return;
-    low = Math.min(low, a);
-    high = Math.max(high, b);
-  };
-  for (const [px, py] of [
-    [cx, cy],
-    [dx, dy],
-  ]) {
+  add(disc(cx, cy));
+  if (length > 0) {
+    add(disc(dx, dy));
+    const vx = (dx - cx) / length;
+    const vy = (dy - cy) / length;
+    const across = band((ay - cy) * vx - (ax - cx) * vy, uy * vx - ux * vy, -withinMm, withinMm, span);
+    const along = band((ax - cx) * vx + (ay - cy) * vy, ux * vx + uy * vy, 0, length, span);
+    add([Math.max(across[0], along[0]), Math.min(across[1], along[1])]);
+  }
+  return low <= high ? [low, high] : null;
+
+  function add([from, to]: readonly [number, number]): void {
+    const first = Math.max(0, from);
+    const last = Math.min(span, to);
+    if (first > last) return;
+    low = Math.min(low, first);
+    high = Math.max(high, last);
+  }
+
+  function disc(px: number, py: number): readonly [number, number] {
     const along = (px - ax) * ux + (py - ay) * uy;
     const across = (py - ay) * ux - (px - ax) * uy;
     const squared = withinMm * withinMm - across * across;
-    if (squared >= 0) add(along - Math.sqrt(squared), along + Math.sqrt(squared));
+    return squared >= 0 ? [along - Math.sqrt(squared), along + Math.sqrt(squared)] : [1, 0];
   }
-  if (length > 0) {
-    const vx = (dx - cx) / length;
-    const vy = (dy - cy) / length;
-    const [fromAcross, toAcross] = band(
-      (ay - cy) * vx - (ax - cx) * vy,
-      uy * vx - ux * vy,
-      -withinMm,
-      withinMm,
-      span,
-    );
-    const [fromAlong, toAlong] = band((ax - cx) * vx + (ay - cy) * vy, ux * vx + uy * vy, 0, length, span);
-    add(Math.max(fromAcross, fromAlong), Math.min(toAcross, toAlong));
-  }
-  return low <= high ? [low, high] : null;
 }
 
 /** Where w0 + t·dw lies between two values, for t from 0 to span; empty (from > to) when nowhere. */
@@ -89,17 +94,6 @@ function band(w0: number, dw: number, low: number, high: number, span: number): 
   return [Math.min(t1, t2), Math.max(t1, t2)];
 }
 
-function fromPoint(px: number, py: number, [ax, ay, bx, by]: Line): Closest {
-  const t = nearestParameter(px, py, ax, ay, bx, by);
-  const x2 = ax + t * (bx - ax);
-  const y2 = ay + t * (by - ay);
-  return { distanceMm: Math.hypot(px - x2, py - y2), x1: px, y1: py, x2, y2 };
-}
-
 export function nearer(one: Closest, two: Closest): Closest {
   return two.distanceMm < one.distanceMm ? two : one;
-}
-
-export function turned({ distanceMm, x1, y1, x2, y2 }: Closest): Closest {
-  return { distanceMm, x1: x2, y1: y2, x2: x1, y2: y1 };
 }

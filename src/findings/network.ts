@@ -46,7 +46,7 @@ function strayChannels(context: FindingContext, flow: FlowState): Finding[] {
         fix:
           ports.length === 0
             ? `join ${channels[0]} to the channel or well it was meant to meet, or take it out of the drawing`
-            : `give ${listText(ports, 2)} a pressure, flow or head, or set it to open; or join ${channels[0]} to a driven part of the chip`,
+            : `give ${ports.length === 1 ? ports[0] : `one of ${listText(ports, 4)}`} a pressure, flow or head, or set it to open; or join ${channels[0]} to a driven part of the chip`,
         at: middleOfReach(network, reaches[0]),
         names: [...new Set([...channels, ...ports])],
       }),

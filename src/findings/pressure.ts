@@ -9,8 +9,8 @@ export const pressureRules: readonly Rule[] = [
   { names: ['under-pressure'], run: underPressure },
 ];
 
-/** Near enough to a vacuum (−101 kPa) that water boils out of its dissolved air, whatever the process allows. */
-const NEAR_VACUUM_PA = -95e3;
+/** Gauge pressure at which water at 37 °C boils (its vapour pressure is 6.28 kPa); it gives off its gas well before that. */
+export const NEAR_VACUUM_PA = -95e3;
 
 function overPressure(context: FindingContext): RuleOutcome {
   const limit = context.chip.limits.maxPressurePa;
@@ -20,7 +20,7 @@ function overPressure(context: FindingContext): RuleOutcome {
     if (!isAbove(highest.pressurePa, limit.value)) return null;
     return toFinding('over-pressure', 'blocker', {
       message: `${highest.where} stands at ${show.text('pressure', highest.pressurePa)}; the chip holds ${limitText(show.text('pressure', limit.value), limit)}${alsoText(names, 'above')}`,
-      fix: `lower what drives it (by a factor of ${(highest.pressurePa / limit.value).toFixed(2)} all pressures and flows together), or make the channels that lead from it wider, deeper or shorter`,
+      fix: `lower what drives it (by a factor of ${(highest.pressurePa / limit.value).toFixed(2)} all pressures and flows together), or make ${highest.isSupply ? 'its tubing shorter or of a wider bore' : 'the channels that lead from it wider, deeper or shorter'}`,
       at: highest.at,
       names,
       measure: { value: highest.pressurePa, limit: limit.value, unit: 'Pa' },
@@ -32,7 +32,7 @@ function underPressure(context: FindingContext): RuleOutcome {
   const limit = context.chip.limits.minPressurePa;
   const show = showFor(context);
   const outcome = judge(context, 'under-pressure', -1, (lowest, names) => {
-    const { pressurePa, where, at } = lowest;
+    const { pressurePa, where, isSupply, at } = lowest;
     const isVacuum = isBelow(pressurePa, NEAR_VACUUM_PA);
     if (!isVacuum && (limit === null || !isBelow(pressurePa, limit.value))) return null;
     const most =
@@ -41,7 +41,7 @@ function underPressure(context: FindingContext): RuleOutcome {
         : `the least is ${limitText(show.text('pressure', limit.value), limit)}`;
     return toFinding('under-pressure', isVacuum ? 'blocker' : 'caution', {
       message: `${where} stands at ${show.text('pressure', pressurePa)}; ${most}${alsoText(names, 'below')}`,
-      fix: 'draw more gently, push from the inlets instead of pulling from the outlets, or make the channels that lead to it wider, deeper or shorter',
+      fix: `draw more gently, push from the inlets instead of pulling from the outlets, or make ${isSupply ? 'its tubing shorter or of a wider bore' : 'the channels that lead to it wider, deeper or shorter'}`,
       at,
       names,
       measure: {
@@ -66,6 +66,7 @@ interface Extreme {
   readonly pressurePa: number;
   readonly where: string;
   readonly name: string;
+  readonly isSupply: boolean;
   readonly at: { readonly xMm: number; readonly yMm: number };
 }
 
@@ -100,6 +101,7 @@ function judge(
       pressurePa: isSupplyWorse ? atSupply : inChip,
       where: isSupplyWorse ? `the supply of ${name}` : `port ${name}`,
       name,
+      isSupply: isSupplyWorse,
       at: { xMm, yMm },
     };
     const part = flow.nodePart[node];
@@ -120,7 +122,13 @@ function judge(
     const xMm = network.nodeX[node];
     const yMm = network.nodeY[node];
     const name = network.nodeName(node);
-    worst.set(part, { pressurePa, where: `node ${name} at ${placeText(xMm, yMm)}`, name, at: { xMm, yMm } });
+    worst.set(part, {
+      pressurePa,
+      where: `node ${name} at ${placeText(xMm, yMm)}`,
+      name,
+      isSupply: false,
+      at: { xMm, yMm },
+    });
   }
   if (known === 0) return { findings: [], notRun: [{ rule, why: 'no pressure in the chip is known' }] };
   const findings: Finding[] = [];

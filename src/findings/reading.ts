@@ -3,7 +3,7 @@ import { middleOfChannel } from './centrelines.ts';
 import type { FindingContext } from './context.ts';
 import { found, type Rule, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
-import { countText, distanceText, listText } from './words.ts';
+import { countText, distanceText, keyText, listText } from './words.ts';
 
 /** What the drawing or the run sheet left open, or said in a way that cannot be read for sure. */
 export const readingRules: readonly Rule[] = [
@@ -84,7 +84,7 @@ function missingDepths(faults: readonly FaultOf<'missing-depth'>[]): Finding[] {
       fix:
         layer === ''
           ? 'write depth: 50 um in the run sheet (with the depth that is etched)'
-          : `write in the run sheet layers: { ${layer}: { depth: 50 um } } (with the depth that is etched), or depth: for all layers`,
+          : `write in the run sheet layers: { ${keyText(layer)}: { depth: 50 um } } (with the depth that is etched), or depth: for all layers`,
       at: { xMm: first.xMm, yMm: first.yMm },
       names: layer === '' ? channels : [...new Set([first.channel, layer, ...channels])],
     });
@@ -109,7 +109,7 @@ function unsetPorts({ chip }: FindingContext): Finding[] {
         fix:
           drawnName === null
             ? 'give the circle a name in the drawing and its pressure, flow or head in the run sheet (or open, or sealed); name it under ignore: if it is no port'
-            : `write in the run sheet ports: { ${name}: { pressure: 10 kPa } } (or flow or head, or just open or sealed)`,
+            : `write in the run sheet ports: { ${keyText(name)}: { pressure: 10 kPa } } (or flow or head, or just open or sealed)`,
         at: { xMm, yMm },
         names: [name],
       }),
@@ -120,7 +120,8 @@ function unsetPorts({ chip }: FindingContext): Finding[] {
 function defaultDepths({ chip }: FindingContext): Finding[] {
   const firstOfLayer = new Map<number, (typeof chip.channels)[number]>();
   for (const channel of chip.channels) {
-    if (channel.depthOrigin === 'default' && !firstOfLayer.has(channel.layer)) {
+    const tookDefault = channel.depthOrigin === 'default' && !Number.isNaN(channel.depthMm);
+    if (tookDefault && !firstOfLayer.has(channel.layer)) {
       firstOfLayer.set(channel.layer, channel);
     }
   }
@@ -130,7 +131,7 @@ function defaultDepths({ chip }: FindingContext): Finding[] {
       const { name } = chip.layers[layer];
       return toFinding('default-depth', 'note', {
         message: `layer ${name} is not named in the run sheet and took its depth of ${distanceText(channel.depthMm)} for all layers`,
-        fix: `write layers: { ${name}: { depth: ${distanceText(channel.depthMm).replace('µ', 'u')} } } in the run sheet to say that this is meant`,
+        fix: `write layers: { ${keyText(name)}: { depth: ${distanceText(channel.depthMm).replace('µ', 'u')} } } in the run sheet to say that this is meant`,
         at: middleOfChannel(channel),
         names: [name],
       });

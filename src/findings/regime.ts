@@ -1,6 +1,6 @@
 import { NODE_KINDS } from '../network/types.ts';
 import { CURVED_FLOW_DEAN, deanNumber } from '../physics/dean.ts';
-import { spreadingLength } from '../physics/entrance.ts';
+import { entranceLength, spreadingLength } from '../physics/entrance.ts';
 import { formatNumber } from '../report/quantity.ts';
 import type { FindingContext } from './context.ts';
 import { reachState, roomLengthM } from './ducts.ts';
@@ -69,6 +69,7 @@ interface Developing {
   readonly lengthM: number;
   readonly developingM: number;
   readonly limitM: number;
+  readonly hydraulicDiameterM: number;
   readonly opening: Opening | null;
   /** Before the outlet the flow gathers again, by the same length as it would spread. */
   readonly gatheringM: number;
@@ -89,7 +90,7 @@ function developingFlow(context: FindingContext): Finding[] {
       ({ developingM, limitM }) => developingM / limitM,
     );
     if (worst === null) return [];
-    const { developingM, limitM, opening, isReversed } = worst.fault;
+    const { developingM, limitM, hydraulicDiameterM, opening, isReversed } = worst.fault;
     const show = showFor(context);
     const name = network.reachName(worst.reach);
     const start = network.nodeName((isReversed ? network.reachTo : network.reachFrom)[worst.reach]);
@@ -97,11 +98,17 @@ function developingFlow(context: FindingContext): Finding[] {
       opening === null
         ? `the flow that enters ${name} at ${start} needs ${show.text('length', developingM)} to develop`
         : `${network.reachName(opening.feeder)} opens into ${name} ${opening.side === 'axis' ? 'on its axis' : 'from its side'} at ${start}, and its flow needs ${show.text('length', developingM)} to spread`;
+    const remedy =
+      opening !== null
+        ? ', lead the flow in through a taper or several feeders'
+        : entranceLength(0, hydraulicDiameterM) < limitM
+          ? ' or send less through it'
+          : '';
     const longerM = developingM / DEVELOPING_SHARE;
     return [
       toFinding('developing-flow', 'caution', {
         message: `${cause}, more than a tenth of the reach (${show.text('length', worst.fault.lengthM)}): ${holdsText(context, worst.reach, worst.fault)}${othersText(context, worst)}`,
-        fix: `make ${name} ${show.text('length', longerM)} long or longer${opening === null ? ' or send less through it' : ', lead the flow in through a taper or several feeders'}, or read its wall shear only where it is developed`,
+        fix: `make ${name} ${show.text('length', longerM)} long or longer${remedy}, or read its wall shear only where it is developed`,
         at: alongReach(network, worst.reach, placeMm(context, worst.reach, worst.fault)),
         names: reachNames(context, worst),
         measure: { value: developingM, limit: limitM, unit: 'm' },
@@ -122,7 +129,8 @@ function developingFlow(context: FindingContext): Finding[] {
     const outlet = longestOpening(openingsAt(context, atNodes, reach, isReversed ? 'from' : 'to', 'out'));
     const gatheringM = outlet === null ? 0 : spreadingLength(state.form.widthM, outlet.side);
     const cause = spreadingM >= state.entranceM ? opening : null;
-    return { lengthM, developingM, limitM, opening: cause, gatheringM, isReversed };
+    const { hydraulicDiameterM } = state.form;
+    return { lengthM, developingM, limitM, hydraulicDiameterM, opening: cause, gatheringM, isReversed };
   }
 }
 

@@ -16,7 +16,7 @@ import {
   withoutLimit,
 } from './rule.ts';
 import type { Finding } from './types.ts';
-import { distanceText, limitText, listText, showFor, sizeAtMostText } from './words.ts';
+import { distanceText, leastText, limitText, listText, mostText, showFor, sizeAtMostText } from './words.ts';
 
 /** A channel's own section: can it be made, does its roof stay up, does its relief stand. */
 export const sectionRules: readonly Rule[] = [
@@ -33,7 +33,7 @@ export const sectionRules: readonly Rule[] = [
         const drawn = channel.profile === 'isotropic' ? 'mask opening' : 'channel';
         return toFinding('narrow-channel', 'blocker', {
           message: `${name} is drawn ${distanceText(drawnWidthMm)} wide; the narrowest ${drawn} is ${limitText(distanceText(limitMm), limit)}`,
-          fix: `draw ${name} with a stroke width of ${distanceText(limitMm)} or more`,
+          fix: `draw ${name} with a stroke width of ${leastText(limitMm)} or more`,
           at,
           names: [name],
           measure: { value: drawnWidthMm / 1e3, limit: limit.value, unit: 'm' },
@@ -55,8 +55,8 @@ export const sectionRules: readonly Rule[] = [
         const drawnAtMost = channel.drawnWidthMm - (ductWidthMm - limit.value * depthMm);
         const narrower = drawnAtMost > 0 ? `narrow ${name} to ${sizeAtMostText(drawnAtMost)}, ` : '';
         return toFinding('roof-span', severity, {
-          message: `the roof of ${name} spans ${formatNumber(ratio)} times its depth (${distanceText(ductWidthMm)} over ${distanceText(depthMm)}) and may sag; at most ${limitText(formatNumber(limit.value), limit)} times is usual for this chip`,
-          fix: `${narrower}etch it ${distanceText(ductWidthMm / limit.value)} deep or deeper, or split it into narrower lanes`,
+          message: `the roof of ${name} spans ${formatNumber(ratio)} times its depth (${distanceText(ductWidthMm)} over ${distanceText(depthMm)}) and may sag; the limit is ${limitText(`${formatNumber(limit.value)} times`, limit)}`,
+          fix: `${narrower}etch it ${leastText(ductWidthMm / limit.value)} deep or deeper, or split it into narrower lanes`,
           at,
           names: [name],
           measure: { value: ratio, limit: limit.value, unit: '' },
@@ -76,8 +76,8 @@ export const sectionRules: readonly Rule[] = [
         const at = middleOfChannel(channel);
         const wider = channel.drawnWidthMm + depthMm / limit.value - ductWidthMm;
         return toFinding('tall-wall', 'caution', {
-          message: `${name} is ${formatNumber(ratio)} times as deep as wide (${distanceText(depthMm)} by ${distanceText(ductWidthMm)}); the process holds ${limitText(formatNumber(limit.value), limit)}`,
-          fix: `draw ${name} ${distanceText(wider)} wide or wider, or etch it at most ${distanceText(limit.value * ductWidthMm)} deep`,
+          message: `${name} is ${formatNumber(ratio)} times as deep as wide (${distanceText(depthMm)} by ${distanceText(ductWidthMm)}); the limit is ${limitText(`${formatNumber(limit.value)} times`, limit)}`,
+          fix: `draw ${name} ${leastText(wider)} wide or wider, or etch it at most ${mostText(limit.value * ductWidthMm)} deep`,
           at,
           names: [name],
           measure: { value: ratio, limit: limit.value, unit: '' },
@@ -131,7 +131,7 @@ function softWalls(context: FindingContext): RuleOutcome {
     const leastDepthM = Math.abs(riseM) / RISE_SHARE;
     return toFinding('soft-walls', 'caution', {
       message: `the roof of ${name} ${riseM > 0 ? 'rises' : 'sinks'} by ${show.text('cross_length', Math.abs(riseM))} on average, ${formatShare(share)} of its depth, at ${show.text('pressure', pressurePa)} and a stiffness of ${limitText(show.text('pressure', stiffness.value), stiffness)}: ${effect}${othersText(context, worst)}`,
-      fix: `keep ${name} below ${show.text('pressure', (Math.abs(pressurePa) * RISE_SHARE) / share)}, narrow it to ${sizeAtMostText((channel.drawnWidthMm * RISE_SHARE) / share)}, etch it ${distanceText(leastDepthM * 1e3)} deep, or make the chip of something stiffer`,
+      fix: `keep ${name} below ${show.text('pressure', (Math.abs(pressurePa) * RISE_SHARE) / share)}, narrow it to ${sizeAtMostText((channel.drawnWidthMm * RISE_SHARE) / share)}, etch it ${leastText(leastDepthM * 1e3)} deep, or make the chip of something stiffer`,
       at: middleOfReach(network, worst.reach),
       names: reachNames(context, worst),
       measure: { value: share, limit: RISE_SHARE, unit: '' },
@@ -162,7 +162,7 @@ function isotropicEtch({ chip }: FindingContext): Finding[] {
     const { name } = chip.layers[layer];
     const where = name === '' ? listText(channels.map((channel) => channel.name)) : `layer ${name}`;
     return toFinding('isotropic-etch', 'caution', {
-      message: `${where} is etched isotropically: the drawn widths are the mask's, the etch undercuts it by its depth on both sides; ${first.name}, drawn ${distanceText(first.drawnWidthMm)} wide and ${distanceText(first.depthMm)} deep, is ${distanceText(2 * first.stripHalfWidthMm)} from wall to wall, and is computed as a rectangle of the same depth and area, ${distanceText(first.ductWidthMm)} wide (good to 5 % in resistance and 3 % in wall shear)`,
+      message: `${where} ${name === '' && channels.length > 1 ? 'are' : 'is'} etched isotropically: the drawn widths are the mask's, the etch undercuts it by its depth on both sides; ${first.name}, drawn ${distanceText(first.drawnWidthMm)} wide and ${distanceText(first.depthMm)} deep, is ${distanceText(2 * first.stripHalfWidthMm)} from wall to wall, and is computed as a rectangle of the same depth and area, ${distanceText(first.ductWidthMm)} wide (good to 5 % in resistance and 3 % in wall shear)`,
       fix: `check that the drawing shows the mask openings; write profile: rectangle for ${name === '' ? 'its layer' : name} if it shows the finished widths of straight walls`,
       at: middleOfChannel(first),
       names: name === '' ? channels.map((channel) => channel.name) : [name, first.name],

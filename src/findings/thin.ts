@@ -1,10 +1,14 @@
 import type { Nearness } from '../geometry/near.ts';
 import type { Pieces } from '../geometry/pieces.ts';
+import { distanceToSegment } from '../geometry/segment.ts';
+import { isInPieceStrip } from '../geometry/strip.ts';
 import { closestPoints, type Line, stretchWithin } from './closest.ts';
 import type { FindingContext } from './context.ts';
+import { onlyGrows } from './growth.ts';
+import { forOwnTurns } from './own-turns.ts';
 import { gapBetween, hasFlatEnd, lineOf } from './painted.ts';
-import { type ChannelPaths, channelPaths, pointOn, type Route, routeLength } from './paths.ts';
-import { type Facing, groupStretches } from './stretches.ts';
+import { channelPaths, pointOn, type Route, routeLength } from './paths.ts';
+import { coveredLength, type Facing, groupStretches } from './stretches.ts';
 
 /**
  * Where two channels, or two stretches of one, leave less material between them than a limit, at places further apart
@@ -62,99 +66,78 @@ export function findThinWalls(
 ): ThinWall[] {
   const { pieces } = near;
   const stretches: ThinStretch[] = [];
-  for (let k = 0; k < near.pairCount; k++) {
-    const i = near.pairA[k];
-    const j = near.pairB[k];
+  const look = (i: number, j: number, distanceMm: number): void => {
     const limitMm = limitOf(pieces.channel[i], pieces.channel[j]);
-    if (Number.isNaN(limitMm)) continue;
-    addThinStretches(stretches, context, pieces, i, j, near.pairDistance[k], limitMm);
-  }
-  const paths = channelPaths(context);
+    if (Number.isNaN(limitMm)) return;
+    addThinStretches(stretches, context, pieces, i, j, distanceMm, limitMm);
+  };
+  for (let k = 0; k < near.pairCount; k++) look(near.pairA[k], near.pairB[k], near.pairDistance[k]);
+  forOwnTurns(pieces, near.withinMm, look);
   return groupStretches(stretches, ({ apartMm }) => apartMm / 2)
-    .filter((group) => !isWedge(context, paths, group))
+    .filter((group) => !isWedge(context, group))
     .map((group) => toThinWall(context, pieces, group));
 }
 
-/** Two sides part for good: the wedge between them grows by at least the join slack over one such distance. */
-function isWedge(context: FindingContext, paths: ChannelPaths, group: readonly ThinStretch[]): boolean {
-  const { network, chip } = context;
-  let nearest = group[0];
-  let atFrom = true;
-  for (const stretch of group) {
-    const way = atFrom ? nearest.wayFrom : nearest.wayTo;
-    if (stretch.wayFrom < way) {
-      nearest = stretch;
-      atFrom = true;
-    }
-    if (stretch.wayTo < (atFrom ? nearest.wayFrom : nearest.wayTo)) {
-      nearest = stretch;
-      atFrom = false;
-    }
-  }
-  const { apartMm } = nearest;
-  if ((atFrom ? nearest.wayFrom : nearest.wayTo) > apartMm * (1 + 1e-6)) return false;
-  const s = atFrom ? nearest.from : nearest.to;
-  const t = atFrom ? nearest.otherFrom : nearest.otherTo;
+/** Whether the stretch begins where the two sides part, at either of its ends, and they only move apart from there. */
+function isWedge(context: FindingContext, group: readonly ThinStretch[]): boolean {
+  const first = group[0];
+  const last = group.reduce((most, stretch) => (stretch.to > most.to ? stretch : most), first);
   return (
-    onlyGrows(group, s, apartMm, chip.joinWithinMm) && partsInProportion(context, paths, nearest, s, t)
+    partsFrom(context, group, first, first.from, first.otherFrom, first.wayFrom) ||
+    partsFrom(context, group, last, last.to, last.otherTo, last.wayTo)
   );
-
-  /**
-   * Two straight arms move apart in proportion to the way from where they part; round a hairpin or over a rung they
-   * reach their distance at once and keep it. So the distance at half the way is asked for.
-   */
-  function partsInProportion(
-    _context: FindingContext,
-    { arcAt, routes }: ChannelPaths,
-    { a, b }: ThinStretch,
-    sideA: number,
-    sideB: number,
-  ): boolean {
-    const route = shortest(
-      routes.call(paths, arcAt.call(paths, a, sideA), arcAt.call(paths, b, sideB), apartMm),
-      sideA,
-      sideB,
-    );
-    if (route === null) return false;
-    let halfA = (3 * sideA + sideB) / 4;
-    let halfB = (sideA + 3 * sideB) / 4;
-    if (route.kind === 'over') {
-      // From a port the sides part at its centre, not at the rim where the way begins; that they only grow apart is enough.
-      if (route.vertex >= 0 && route.vertex < network.nodeCount && network.nodePort[route.vertex] >= 0) return true;
-      halfA = (sideA + route.leaveAt) / 2;
-      halfB = (sideB + route.enterAt) / 2;
-    }
-    return distanceBetween(a, sideA, b, sideB) >= 1.5 * distanceBetween(a, halfA, b, halfB);
-  }
-
-  function distanceBetween(a: number, s1: number, b: number, s2: number): number {
-    const [x1, y1] = pointOn(network, a, s1);
-    const [x2, y2] = pointOn(network, b, s2);
-    return Math.hypot(x2 - x1, y2 - y1);
-  }
 }
 
-/** Whether, walked from position s (an end of the group), the gap never falls and never stands still for long. */
-function onlyGrows(group: readonly ThinStretch[], s: number, apartMm: number, slackMm: number): boolean {
-  const low = group[0].from;
-  const high = group.reduce((most, stretch) => Math.max(most, stretch.to), low);
-  const forward = s - low <= high - s;
-  if ((forward ? s - low : high - s) > slackMm) return false;
-  const samples: { way: number; gap: number }[] = [];
-  for (const { from, to, gapFrom, gapTo, gapMm, thinnestAt } of group) {
-    samples.push({ way: Math.abs(from - s), gap: gapFrom });
-    samples.push({ way: Math.abs(thinnestAt - s), gap: gapMm });
-    samples.push({ way: Math.abs(to - s), gap: gapTo });
+function partsFrom(
+  context: FindingContext,
+  group: readonly ThinStretch[],
+  stretch: ThinStretch,
+  s: number,
+  t: number,
+  way: number,
+): boolean {
+  // A group that does not go down to the least way (give or take the jump from one chord of a curve to the next) begins
+  // further along: a stretch of its own.
+  if (way > 1.25 * stretch.apartMm) return false;
+  const samples = group.flatMap(({ from, to, gapFrom, gapTo, gapMm, thinnestAt }) => [
+    { way: Math.abs(from - s), apart: gapFrom },
+    { way: Math.abs(thinnestAt - s), apart: gapMm },
+    { way: Math.abs(to - s), apart: gapTo },
+  ]);
+  return (
+    onlyGrows(samples, stretch.apartMm, context.chip.joinWithinMm) && partInProportion(context, stretch, s, t)
+  );
+}
+
+/**
+ * Two straight arms move apart in proportion to the way from where they part; round a hairpin, or on two rungs of one
+ * ladder, they reach their distance at once and keep it. So the distance is compared with that at half the way.
+ */
+function partInProportion(
+  context: FindingContext,
+  { a, b, apartMm }: ThinStretch,
+  s: number,
+  t: number,
+): boolean {
+  const { network } = context;
+  const paths = channelPaths(context);
+  const route = shortest(paths.routes(paths.arcAt(a, s), paths.arcAt(b, t), apartMm), s, t);
+  if (route === null) return false;
+  if (route.kind === 'along') return isProportional((3 * s + t) / 4, (s + 3 * t) / 4);
+  // From a port the sides part at its centre, not at the rim where the way begins; that they only move apart is enough.
+  const node = route.vertex;
+  if (node >= 0 && node < network.nodeCount && network.nodePort[node] >= 0) return true;
+  return isProportional((s + route.leaveAt) / 2, (t + route.enterAt) / 2);
+
+  function isProportional(halfS: number, halfT: number): boolean {
+    return distanceBetween(s, t) >= 1.5 * distanceBetween(halfS, halfT);
   }
-  samples.sort((p, q) => p.way - q.way || p.gap - q.gap);
-  let { way, gap } = samples[0];
-  for (const sample of samples) {
-    if (sample.gap < gap - slackMm) return false;
-    const share = (sample.way - way) / apartMm;
-    if (share > 1 && sample.gap - gap <= slackMm * share) return false;
-    if (sample.gap > gap + slackMm) ({ way, gap } = sample);
+
+  function distanceBetween(onA: number, onB: number): number {
+    const [x1, y1] = pointOn(network, a, onA);
+    const [x2, y2] = pointOn(network, b, onB);
+    return Math.hypot(x2 - x1, y2 - y1);
   }
-  return true;
 }
 
 function shortest(routes: readonly Route[], s: number, t: number): Route | null {
@@ -176,9 +159,12 @@ function toThinWall({ chip }: FindingContext, pieces: Pieces, group: readonly Th
     toB = Math.max(toB, stretch.otherFrom, stretch.otherTo);
     toA = Math.max(toA, stretch.to);
   }
-  // Equally thin for long: the middle of the place is where to look.
-  const even = group.filter(({ gapMm }) => gapMm <= thinnest.gapMm + 1e-9);
-  thinnest = even[even.length >> 1];
+  // Equally thin for long: the middle of the longest such stretch is where to look.
+  const least = thinnest.gapMm + 1e-9;
+  for (const stretch of group) {
+    if (stretch.gapMm <= least && stretch.to - stretch.from > thinnest.to - thinnest.from + 1e-6)
+      thinnest = stretch;
+  }
   const { i, j, gapMm, limitMm } = thinnest;
   return {
     pieceA: i,
@@ -189,7 +175,7 @@ function toThinWall({ chip }: FindingContext, pieces: Pieces, group: readonly Th
     toA,
     fromB,
     toB,
-    lengthMm: coveredThin(group),
+    lengthMm: coveredLength(group.map(({ thinFrom, thinTo }) => [thinFrom, thinTo])),
     gapMm,
     limitMm,
     mark: markAt(chip.channels[pieces.channel[i]].linecap !== 'round'),
@@ -217,17 +203,6 @@ function toThinWall({ chip }: FindingContext, pieces: Pieces, group: readonly Th
   }
 }
 
-function coveredThin(group: readonly ThinStretch[]): number {
-  let covered = 0;
-  let reach = Number.NEGATIVE_INFINITY;
-  for (const { thinFrom, thinTo } of [...group].sort((p, q) => p.thinFrom - q.thinFrom)) {
-    if (thinTo <= reach) continue;
-    covered += thinTo - Math.max(thinFrom, reach);
-    reach = thinTo;
-  }
-  return covered;
-}
-
 /** Two straight pieces nearer than the limit: the part of the first that is thin and far enough along the channels. */
 function addThinStretches(
   into: ThinStretch[],
@@ -244,21 +219,25 @@ function addThinStretches(
   const withinMm = halves + limitMm * (1 - 1e-9) - (limitMm === 0 ? -1e-9 * halves : 0);
   const flat = hasFlatEnd(chip, pieces, i) || hasFlatEnd(chip, pieces, j);
   if (!flat && distanceMm >= withinMm) return;
-  // Straight pieces that meet move apart evenly: between them is a wedge from where they meet, never a wall.
-  if (distanceMm <= chip.joinWithinMm && !areParallel(pieces, i, j)) return;
+  if (distanceMm <= chip.joinWithinMm && crossesSquarely(pieces, i, j)) return;
   const a = pieces.centreline[i];
   const b = pieces.centreline[j];
   const apartMm = 4 * (halves + limitMm);
   if (a === b && pieces.start[j] + pieces.length[j] - pieces.start[i] <= apartMm) return;
-  let exactMm = Number.NEGATIVE_INFINITY;
-  if (flat) {
-    exactMm = gapBetween(chip, pieces, i, j).distanceMm;
-    if (exactMm >= withinMm - halves) return;
-  }
-  const paths = channelPaths(context);
   const lineI = lineOf(pieces, i);
   const lineJ = lineOf(pieces, j);
   const closest = closestPoints(lineI, lineJ);
+  // Half a width round the centreline is the painted area but for the square ends: where these face, they are measured.
+  let exactMm = Number.NEGATIVE_INFINITY;
+  if (
+    flat &&
+    distanceMm > 0 &&
+    (isAtEnd(lineI, closest.x1, closest.y1) || isAtEnd(lineJ, closest.x2, closest.y2))
+  ) {
+    exactMm = gapBetween(chip, pieces, i, j).distanceMm;
+    if (exactMm >= withinMm - halves) return;
+  } else if (distanceMm >= withinMm) return;
+  const paths = channelPaths(context);
   const nearestAt = pieces.start[i] + Math.hypot(closest.x1 - pieces.x1[i], closest.y1 - pieces.y1[i]);
   const thin = stretchWithin(lineI, lineJ, withinMm);
   const thinFrom = thin === null ? nearestAt : pieces.start[i] + thin[0];
@@ -276,9 +255,13 @@ function addThinStretches(
     const t = s - pieces.start[i];
     const x = pieces.x1[i] + ux * t;
     const y = pieces.y1[i] + uy * t;
-    return Math.max(closestPoints([x, y, x, y], lineJ).distanceMm - halves, exactMm);
+    return Math.max(
+      distanceToSegment(x, y, pieces.x1[j], pieces.y1[j], pieces.x2[j], pieces.y2[j]) - halves,
+      exactMm,
+    );
   };
 
+  const faces = facingTest(context, pieces, i, j);
   // Between these positions the way from s to the place that it faces is the least of a few linear functions of s.
   const cuts = [thinFrom, thinTo];
   paths.addBounds(cuts, a, thinFrom, thinTo);
@@ -292,13 +275,14 @@ function addThinStretches(
       if (s > thinFrom && s < thinTo) cuts.push(s);
     }
   }
+  for (const s of faces.cuts) if (s > thinFrom && s < thinTo) cuts.push(s);
   cuts.sort((p, q) => p - q);
   for (let k = 0; k + 1 < cuts.length; k++) {
     const low = cuts[k];
     const high = cuts[k + 1];
     if (high - low <= 1e-9 && cuts.length > 2) continue;
     const middle = (low + high) / 2;
-    if (paths.isInWell(a, middle) || paths.isInWell(b, facing(middle))) continue;
+    if (!faces.at(middle) || paths.isInWell(a, middle) || paths.isInWell(b, facing(middle))) continue;
     const arcA = paths.arcAt(a, middle);
     const arcB = paths.arcAt(b, facing(middle));
     if (arcA < 0 || arcB < 0) continue;
@@ -360,14 +344,76 @@ function wayOf(routes: readonly Route[], s: number, t: number): number {
   return least;
 }
 
+/** sin α for tan(α/2) = 1/4: 2t/(1 + t²). */
+const SQUARE_SINE = 0.5 / (1 + 1 / 16);
+
 /** Cosine so near 1 that over a metre the two pieces move apart by less than a micrometre. */
 function evenlyThin(cosine: number): boolean {
   return 1 - Math.abs(cosine) < 1e-12;
 }
 
-function areParallel(pieces: Pieces, i: number, j: number): boolean {
+function isAtEnd([ax, ay, bx, by]: Line, x: number, y: number): boolean {
+  return (x === ax && y === ay) || (x === bx && y === by);
+}
+
+/**
+ * Straight pieces that meet at an angle α are thin up to R/sin α from there, R being both halves and the limit, and there
+ * the way along the channels is R cot(α/2): never over the 4 R that make a wall when tan(α/2) is 1/4 or more.
+ */
+function crossesSquarely(pieces: Pieces, i: number, j: number): boolean {
   const cross =
     (pieces.x2[i] - pieces.x1[i]) * (pieces.y2[j] - pieces.y1[j]) -
     (pieces.y2[i] - pieces.y1[i]) * (pieces.x2[j] - pieces.x1[j]);
-  return Math.abs(cross) <= 1e-9 * pieces.length[i] * pieces.length[j];
+  return Math.abs(cross) >= SQUARE_SINE * pieces.length[i] * pieces.length[j];
+}
+
+/**
+ * Whether a place s on piece i faces piece j: no nearer place lies next to it on one of j's neighbours, and it does not look
+ * along its own strip at a square end that stands in it. The answer changes only at `cuts`.
+ */
+function facingTest(
+  { chip }: FindingContext,
+  pieces: Pieces,
+  i: number,
+  j: number,
+): { readonly cuts: readonly number[]; readonly at: (s: number) => boolean } {
+  const ux = (pieces.x2[i] - pieces.x1[i]) / pieces.length[i];
+  const uy = (pieces.y2[i] - pieces.y1[i]) / pieces.length[i];
+  const vx = (pieces.x2[j] - pieces.x1[j]) / pieces.length[j];
+  const vy = (pieces.y2[j] - pieces.y1[j]) / pieces.length[j];
+  const cuts: number[] = [];
+  const start = sideOf(pieces.x1[j], pieces.y1[j], -vx, -vy, neighbour(pieces, j, -1));
+  const end = sideOf(pieces.x2[j], pieces.y2[j], vx, vy, neighbour(pieces, j, 1));
+  return { cuts, at: (s) => start(s) && end(s) };
+
+  /** One end of j: out of it points (ox, oy), and its neighbour there goes on in its own direction. */
+  function sideOf(x: number, y: number, ox: number, oy: number, next: number): (s: number) => boolean {
+    const beyond = alongLine(x, y, ox, oy);
+    if (next < 0) {
+      const isInside = isInPieceStrip(pieces, i, x, y, chip.joinWithinMm, null);
+      return (s) => !isInside || beyond(s) <= 0;
+    }
+    const sign = Math.hypot(pieces.x1[next] - x, pieces.y1[next] - y) < 1e-12 ? 1 : -1;
+    const nx = (sign * (pieces.x2[next] - pieces.x1[next])) / pieces.length[next];
+    const ny = (sign * (pieces.y2[next] - pieces.y1[next])) / pieces.length[next];
+    const onNext = alongLine(x, y, nx, ny);
+    return (s) => beyond(s) <= 0 || onNext(s) <= 0;
+  }
+
+  /** How far beyond (x, y) in a direction the place s lies; its change of sign is a cut. */
+  function alongLine(x: number, y: number, dx: number, dy: number): (s: number) => number {
+    const atStart = (pieces.x1[i] - x) * dx + (pieces.y1[i] - y) * dy;
+    const slope = ux * dx + uy * dy;
+    if (Math.abs(slope) > 1e-12) cuts.push(pieces.start[i] - atStart / slope);
+    return (s) => atStart + slope * (s - pieces.start[i]);
+  }
+}
+
+/** The piece before (−1) or after (1) on the centreline; −1 at an end. */
+function neighbour(pieces: Pieces, j: number, step: 1 | -1): number {
+  const c = pieces.centreline[j];
+  const first = pieces.firstPiece[c];
+  const count = pieces.firstPiece[c + 1] - first;
+  if (pieces.centrelineClosed[c] === 1) return count > 1 ? first + ((j - first + step + count) % count) : -1;
+  return j + step < first || j + step >= first + count ? -1 : j + step;
 }

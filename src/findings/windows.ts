@@ -352,7 +352,7 @@ function flowFindings(context: FindingContext, { reaches, window }: Watched<Wind
     const isLow = side === 'below';
     return toFinding('flow-window', 'blocker', {
       message: `${show.text('flow', worst.fault)} flows through ${name}, ${side} the ${isLow ? 'least' : 'most'} of ${limitNow}${othersText(context, worst)}`,
-      fix: `${isLow ? 'raise' : 'lower'} what drives ${name}${worst.fault > 0 ? ` by a factor of ${formatNumber(isLow ? limit / worst.fault : worst.fault / limit)}` : ''}, or make its branch ${isLow ? 'wider, deeper or shorter' : 'narrower, shallower or longer'} than its brothers`,
+      fix: `${isLow ? 'raise' : 'lower'} what drives ${name}${worst.fault > 0 ? ` by a factor of ${formatNumber(isLow ? limit / worst.fault : worst.fault / limit)}` : ''}, or make its branch ${isLow ? 'wider, deeper or shorter' : 'narrower, shallower or longer'}`,
       at: middleOfReach(network, worst.reach),
       names: reachNames(context, worst),
       measure: { value: worst.fault, limit, unit: 'm³/s' },

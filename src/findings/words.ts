@@ -23,6 +23,21 @@ export function sizeAtMostText(mm: number): string {
   return `${formatMm(Math.floor(mm * 1e3 + 1e-6) / 1e3)} mm`;
 }
 
+/** The least size that will do (mm), rounded up to 1 µm: "68 µm". */
+export function leastText(mm: number): string {
+  return distanceText(Math.ceil(mm * 1e3 - 1e-6) / 1e3);
+}
+
+/** The largest size that will do (mm), rounded down to 1 µm. */
+export function mostText(mm: number): string {
+  return distanceText(Math.floor(mm * 1e3 + 1e-6) / 1e3);
+}
+
+/** A name as a key of the run sheet, quoted where YAML would read it as something else. */
+export function keyText(name: string): string {
+  return /^[A-Za-z_][\w.-]*$/.test(name) ? name : JSON.stringify(name);
+}
+
 /** A place in the drawing: "(12.5, 3 mm)". */
 export function placeText(xMm: number, yMm: number): string {
   return `(${formatMm(xMm)}, ${formatMm(yMm)} mm)`;

@@ -5,6 +5,8 @@ export interface LabelWish {
   readonly text: string;
   readonly widthMm: number;
   readonly heightMm: number;
+  /** What to try when this finds no place: the same in fewer letters. */
+  readonly shorter?: LabelWish;
   /** Points it may belong to, best first, each with how far from it the label must stay (the strip's or hole's half width). */
   readonly anchors: readonly { readonly x: number; readonly y: number; readonly clear: number }[];
 }
@@ -56,7 +58,14 @@ export function placeLabels(
   const taken: Box[] = [...ground.obstacles];
   const lines: Line[] = [...ground.lines];
   return wishes.map((wish) => {
-    const placed = placeOne(wish, ground, taken, lines);
+    let placed: PlacedLabel | undefined;
+    for (
+      let next: LabelWish | undefined = wish;
+      next !== undefined && placed === undefined;
+      next = next.shorter
+    ) {
+      placed = placeOne(next, ground, taken, lines);
+    }
     if (placed !== undefined) {
       taken.push(placed.box);
       if (placed.leader !== null) lines.push(placed.leader);

@@ -371,9 +371,20 @@ function labelsOf(
     heightMm: 1.25 * size,
     anchors,
   });
-  const portWishes = holes
-    .slice(0, LABEL_BOUND)
-    .map((hole, i) => wish(portText(one, i, options), [{ x: hole.x, y: hole.y, clear: hole.radiusMm }]));
+  const portWishes = holes.slice(0, LABEL_BOUND).map((hole, port) => {
+    const anchors = [{ x: hole.x, y: hole.y, clear: hole.radiusMm }];
+    // a port is named, if need be by the first letters of its name
+    const [full, ...shorter] = [
+      portText(one, port, options),
+      shortName(hole.name, options.readable),
+      shortName(hole.name, options.readable, 8),
+    ];
+    const fallback = shorter.reduceRight<LabelWish | undefined>(
+      (next, text) => ({ ...wish(text, anchors), ...(next === undefined ? {} : { shorter: next }) }),
+      undefined,
+    );
+    return { ...wish(full, anchors), ...(fallback === undefined ? {} : { shorter: fallback }) };
+  });
   const findingWishes = markers.map(({ number, x, y }) => wish(String(number), [{ x, y, clear: 0.8 }]));
   const reaches = options.reachLabels ? reachesToLabel(one, values) : { chosen: [], of: 0 };
   const reachWishes = reaches.chosen.map((reach) =>
@@ -444,10 +455,10 @@ function reachText(
   return Number.isNaN(value) ? name : `${name} ${formatNumber(value / unit.si)}`;
 }
 
-/** At most 24 characters of a readable name. */
-export function shortName(name: string, readable: (name: string) => string): string {
+/** The first characters of a readable name, with an ellipsis where it is longer. */
+export function shortName(name: string, readable: (name: string) => string, length = 24): string {
   const characters = [...readable(name)];
-  return characters.length <= 24 ? characters.join('') : `${characters.slice(0, 23).join('')}…`;
+  return characters.length <= length ? characters.join('') : `${characters.slice(0, length - 1).join('')}…`;
 }
 
 function findingMarkers({ part }: ReportedCase, frame: Frame): { number: number; x: number; y: number }[] {

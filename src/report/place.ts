@@ -9,7 +9,8 @@ import { formatNumber } from './quantity.ts';
 /** A close-up of a finding's place as data; paper millimetres from the picture's upper left corner, everything clipped to it. */
 export interface PlaceDrawing {
   readonly widthMm: number;
-  readonly heightMm: number;
+  /** Of the picture itself; the scale bar stands below it. */
+  readonly viewHeightMm: number;
   readonly scale: number;
   readonly edge: readonly (readonly number[])[];
   /** Channels in view: rim first, then fill; those the finding names are darker. */
@@ -43,10 +44,12 @@ const PIECE_BOUND = 3000;
 export function drawPlace(
   geometry: ChipGeometry,
   finding: Finding,
-  options: PlaceOptions,
+  whole: PlaceOptions,
 ): PlaceDrawing | null {
   const { xMm, yMm } = finding;
   if (xMm === null || yMm === null) return null;
+  // the scale bar's strip is left free at the foot
+  const options = { ...whole, heightMm: whole.heightMm - 3 * whole.labelSizeMm };
   const view = viewOf(geometry, finding, xMm, yMm, options);
   const scale = options.widthMm / view.width;
   const x = (value: number): number => (value - view.x) * scale;
@@ -62,7 +65,7 @@ export function drawPlace(
     .sort((a, b) => a - b);
   return {
     widthMm: options.widthMm,
-    heightMm: options.heightMm,
+    viewHeightMm: options.heightMm,
     scale,
     edge: (geometry.chip.edge?.rings ?? []).map((ring) =>
       Array.from(ring, (value, i) => (i % 2 === 0 ? x(value) : y(value))),
@@ -172,19 +175,12 @@ function labelsOf(
   const wishes: LabelWish[] = [];
   if (options.measured !== null) wishes.push(wish(options.measured, [{ ...centre, clear: 0.4 }]));
   const named = new Set(finding.names);
-  const seen = new Set<number>();
-  for (const piece of inView) {
-    const index = geometry.pieceChannel[piece];
+  for (const [index, piece] of longestPieces(geometry, inView, view)) {
     const channel = geometry.chip.channels[index];
-    if (seen.has(index) || !named.has(channel.name)) continue;
-    seen.add(index);
+    if (!named.has(channel.name)) continue;
     const clear = Math.max(stripHalfWidthMm(channel) * scale, 0.15) + 0.2;
-    wishes.push(
-      wish(
-        shortName(channel.name, options.readable),
-        inViewPoints(geometry, piece, view, scale).map((point) => ({ ...point, clear })),
-      ),
-    );
+    const anchors = inViewPoints(geometry, piece, view, scale).map((point) => ({ ...point, clear }));
+    wishes.push(wish(shortName(channel.name, options.readable), anchors));
   }
   for (const hole of holes.slice(0, 6)) {
     const anchor = {
@@ -195,7 +191,7 @@ function labelsOf(
     wishes.push(wish(shortName(hole.name, options.readable), [anchor]));
   }
   const placed = placeLabels(wishes, {
-    area: { x: 0.4, y: 0.4, width: options.widthMm - 0.8, height: options.heightMm - 0.8 - 3.2 * size },
+    area: { x: 0.4, y: 0.4, width: options.widthMm - 0.8, height: options.heightMm - 0.8 },
     geometry,
     toDrawing: (box) => ({
       x: view.x + box.x / scale,
@@ -211,7 +207,7 @@ function labelsOf(
       width: 2 * radiusMm,
       height: 2 * radiusMm,
     })),
-    lines: [],
+    lines: markLine(finding, view, scale),
   });
   return placed.flatMap((label) =>
     label === undefined
@@ -220,15 +216,25 @@ function labelsOf(
   );
 }
 
-/** Points of a piece inside the view, in paper mm: the middle of what shows, then its quarters. */
-function inViewPoints(
-  { pieces }: ChipGeometry,
-  piece: number,
+/** Of each channel in view the piece that shows most of its length. */
+function longestPieces(
+  geometry: ChipGeometry,
+  inView: readonly number[],
   view: Box,
-  scale: number,
-): { x: number; y: number }[] {
-  const [x1, y1, x2, y2] = pieces.subarray(4 * piece, 4 * piece + 4);
-  // Liang–Barsky: the share of the piece that lies inside
+): ReadonlyMap<number, number> {
+  const best = new Map<number, { piece: number; length: number }>();
+  for (const piece of inView) {
+    const [x1, y1, x2, y2] = geometry.pieces.subarray(4 * piece, 4 * piece + 4);
+    const [from, to] = visibleShare(x1, y1, x2, y2, view);
+    const length = (to - from) * Math.hypot(x2 - x1, y2 - y1);
+    const channel = geometry.pieceChannel[piece];
+    if (length > (best.get(channel)?.length ?? -1)) best.set(channel, { piece, length });
+  }
+  return new Map([...best].map(([channel, { piece }]) => [channel, piece]));
+}
+
+/** Liang–Barsky: from where to where, as shares, a piece lies inside the view; its middle twice when it lies outside. */
+function visibleShare(x1: number, y1: number, x2: number, y2: number, view: Box): readonly [number, number] {
   let [from, to] = [0, 1];
   for (const [start, delta, low, high] of [
     [x1, x2 - x1, view.x, view.x + view.width],
@@ -239,11 +245,35 @@ function inViewPoints(
     from = Math.max(from, Math.min(a, b));
     to = Math.min(to, Math.max(a, b));
   }
-  if (from > to) [from, to] = [0.5, 0.5];
+  return from > to ? [0.5, 0.5] : [from, to];
+}
+
+/** Points of a piece inside the view, in paper mm: the middle of what shows, then its quarters. */
+function inViewPoints(
+  { pieces }: ChipGeometry,
+  piece: number,
+  view: Box,
+  scale: number,
+): { x: number; y: number }[] {
+  const [x1, y1, x2, y2] = pieces.subarray(4 * piece, 4 * piece + 4);
+  const [from, to] = visibleShare(x1, y1, x2, y2, view);
   return [0.5, 0.25, 0.75].map((share) => {
     const t = from + (to - from) * share;
     return { x: (x1 + (x2 - x1) * t - view.x) * scale, y: (y1 + (y2 - y1) * t - view.y) * scale };
   });
+}
+
+/** The distance marked, so that no label lies on it. */
+function markLine({ mark }: Finding, view: Box, scale: number): [number, number, number, number][] {
+  if (mark === undefined) return [];
+  return [
+    [
+      (mark.x1Mm - view.x) * scale,
+      (mark.y1Mm - view.y) * scale,
+      (mark.x2Mm - view.x) * scale,
+      (mark.y2Mm - view.y) * scale,
+    ],
+  ];
 }
 
 function clamp(value: number, low: number, high: number): number {
@@ -254,7 +284,7 @@ function scaleBarOf(scale: number, options: PlaceOptions): ScaleBar {
   const drawn = niceStep((0.18 * options.widthMm) / scale);
   return {
     x: options.widthMm - drawn * scale - 1.5,
-    y: options.heightMm - 2.6 * options.labelSizeMm,
+    y: options.heightMm + 0.6 * options.labelSizeMm,
     lengthMm: drawn * scale,
     text: drawn >= 1 ? `${formatNumber(drawn)} mm` : `${formatNumber(drawn * 1000)} µm`,
     sizeMm: options.labelSizeMm,

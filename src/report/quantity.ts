@@ -141,12 +141,15 @@ export function showOf(show: ShowUnits | null): Show {
   };
 }
 
+/** Quantities whose unit always follows the value. */
+const CLIMBING: ReadonlySet<Shown> = new Set(['residence_time', 'resistance']);
+
 /** The usual unit while the value reads well in it (0.01 to 10 000), else the largest unit that the value reaches. */
 function fittingUnit(shown: Shown, largest: number): Unit {
   const { usual, units } = LADDERS[shown];
   const usualUnit = units.find((unit) => unit.text === usual) ?? units[0];
   const inUsual = largest / usualUnit.si;
-  if (!(largest > 0) || (inUsual >= 0.01 && inUsual < 1e4 && shown !== 'residence_time')) return usualUnit;
+  if (!(largest > 0) || (inUsual >= 0.01 && inUsual < 1e4 && !CLIMBING.has(shown))) return usualUnit;
   // times go up to the next unit as soon as they reach two of it: 119 s, but 2 min
   const reach = shown === 'residence_time' ? 2 : 1;
   let best = units[0];
@@ -201,7 +204,7 @@ export function measureText(show: Show, value: number | null, unit: string | nul
   if (value === null) return '–';
   switch (unit) {
     case 'm':
-      return show.text('cross_length', value);
+      return show.text(Math.abs(value) < 1e-3 ? 'cross_length' : 'length', value);
     case 'Pa':
       return show.text(rule === 'shear-window' ? 'wall_shear' : 'pressure', value);
     case 's':

@@ -1,6 +1,8 @@
 import type { FindingReport } from '../findings/types.ts';
 import type { Network } from '../network/types.ts';
+import type { FoundSettings } from '../solve/targets.ts';
 import type { FlowState } from '../solve/types.ts';
+import type { Spread } from '../spread/types.ts';
 import { type Show, showOf } from './quantity.ts';
 import { buildCasesResult, buildResult, type CasePart, type Result, type ResultInput } from './result.ts';
 
@@ -13,6 +15,12 @@ export interface ReportedCase {
   readonly flow: FlowState;
   readonly findings: FindingReport;
   readonly show: Show;
+  /** Only of the command pump: the settings behind part.pump. */
+  readonly pump?: FoundSettings;
+  /** Only of the command spread: what is behind part.spread. */
+  readonly spread?: Spread;
+  /** The flows that counting centrelines alone would give; null where nobody can say. */
+  readonly centrelineFlow: (() => FlowState) | null;
 }
 
 /** What all writers take: the result document, and the cases behind it in the same order. */
@@ -37,5 +45,13 @@ export function buildCasesReport(
 
 function reportedCase(name: string | null, input: ResultInput, part: CasePart): ReportedCase {
   const { network, flow, findings, chip } = input;
-  return { name, part, network, flow, findings, show: showOf(chip.sheet?.show ?? null) };
+  return {
+    name,
+    part,
+    network,
+    flow,
+    findings,
+    show: showOf(chip.sheet?.show ?? null),
+    centrelineFlow: input.centrelineFlow ?? null,
+  };
 }

@@ -179,30 +179,76 @@ export const pumpSchema = v.strictObject({
       supply_pressure_pa: maybe('At the far end of the tubing'),
       flow_m3_s: maybe('Into the chip'),
       within_limits: v.nullable(v.boolean()),
+      range: v.exactOptional(
+        v.pipe(
+          v.strictObject({
+            supply_pressure_min_pa: maybe('Open ends are null'),
+            supply_pressure_max_pa: maybe('Open ends are null'),
+            flow_min_m3_s: maybe('Open ends are null'),
+            flow_max_m3_s: maybe('Open ends are null'),
+          }),
+          v.description('For a window: what of this port alone keeps it'),
+        ),
+      ),
     }),
   ),
 });
 
 export const spreadSchema = v.strictObject({
   draws: count('Draws in the sample'),
+  draws_asked: count('Draws asked for; more than draws when the sample was stopped before its end'),
+  draws_outside_model: count(
+    'Draws of which nothing can be computed (a duct closed, a temperature that no data cover): they count as not good',
+  ),
   seed: v.pipe(v.number(), v.integer()),
   outputs: v.array(
     v.strictObject({
+      on: v.picklist(['port', 'reach', 'channel', 'node']),
       name: text,
       quantity: text,
       unit: text,
-      nominal: v.nullable(v.number()),
-      mean: v.nullable(v.number()),
-      sd: v.nullable(v.number()),
-      p2_5: v.nullable(v.number()),
-      p97_5: v.nullable(v.number()),
-      linear_sd: v.nullable(v.number()),
-      shares: v.record(text, v.number()),
+      nominal: maybe('Without any tolerance'),
+      mean: maybe('Of the sample'),
+      sd: maybe('Standard deviation of the sample'),
+      p2_5: maybe('2.5 % of the draws lie below'),
+      p97_5: maybe('97.5 % of the draws lie below'),
+      linear_sd: maybe('Standard deviation to first order, by exact derivatives'),
+      linear: v.pipe(
+        v.nullable(v.boolean()),
+        v.description('Whether sample and first order agree; null where one is missing'),
+      ),
+      kept: maybe(
+        'Share of the draws that keep what a window or limit asks of it; null where nothing is asked',
+      ),
+      shares: v.pipe(
+        v.record(text, v.number()),
+        v.description('Share of the first-order variance by tolerance'),
+      ),
     }),
   ),
-  yield: v.nullable(v.number()),
-  yield_low: v.nullable(v.number()),
-  yield_high: v.nullable(v.number()),
+  outputs_left_out: count('Outputs for which there was no room; their windows are judged all the same'),
+  yield: maybe(
+    'Share of the draws in which all windows and limits hold; null when a window can not be judged',
+  ),
+  yield_low: maybe('Lower end of its 95 % interval'),
+  yield_high: maybe('Upper end of its 95 % interval'),
+  not_judged: v.array(text),
+  worst_corner: v.nullable(
+    v.strictObject({
+      on: v.picklist(['port', 'reach', 'channel', 'node']),
+      name: text,
+      quantity: text,
+      unit: text,
+      limit: number('The limit with least room, in standard deviations'),
+      room_sd: number('Standard deviations between the nominal value and the limit; below 0 beyond it'),
+      value: maybe('Of the number with every tolerance at its worst end'),
+      kept: v.boolean(),
+      at: v.pipe(
+        v.record(text, v.picklist(['upper', 'lower', 'each its own'])),
+        v.description('End at which each tolerance stands there'),
+      ),
+    }),
+  ),
 });
 
 /** What concerns one case: everything but tool, layout and run sheet. */

@@ -64,6 +64,8 @@ export interface ResultInput {
   readonly layoutFile: string;
   /** How far unresolved joints could move each port's flow, as a share of it; in the order of chip.ports. */
   readonly jointFlowShare?: Float64Array;
+  /** The flows that counting centrelines alone would give, for the report's list of joints; found when asked for. */
+  readonly centrelineFlow?: () => FlowState;
   readonly pump?: PumpPart;
   readonly spread?: SpreadPart;
 }

@@ -62,18 +62,38 @@ function edge({ edge: rings }: MapDrawing): string[] {
 }
 
 function ground({ ground: strokes }: MapDrawing): string[] {
-  return ['<g fill="none">\n', ...strokes.map((stroke) => strokePath(stroke)), '</g>\n'];
+  return [
+    '<g fill="none" stroke-linejoin="round">\n',
+    ...strokes.map((stroke) => `${strokePath(stroke)}\n`),
+    '</g>\n',
+  ];
 }
 
 function reaches(drawing: MapDrawing, one: ReportedCase): string[] {
+  const title = drawing.reaches.length > LONG_TITLES ? shortTitle : reachTitle;
   return [
-    '<g fill="none">\n',
+    '<g fill="none" stroke-linejoin="round">\n',
     ...drawing.reaches.map(({ reach, strokes }) => {
-      const title = `<title>${escapeXml(reachTitle(one, reach))}</title>`;
-      return `<g>${title}${strokes.map((stroke) => strokePath(stroke).trimEnd()).join('')}</g>\n`;
+      const hover = `<title>${escapeXml(title(one, reach))}</title>`;
+      return strokes.length === 1
+        ? `${strokePath(strokes[0], hover)}\n`
+        : `<g>${hover}${strokes.map((stroke) => strokePath(stroke)).join('')}</g>\n`;
     }),
     '</g>\n',
   ];
+}
+
+/** Above this many reaches their titles hold what fits a line, to keep the picture openable. */
+const LONG_TITLES = 10_000;
+
+function shortTitle({ network, flow, show }: ReportedCase, reach: number): string {
+  const flowM3s = flow.reachFlow[reach];
+  const dropPa = flow.reachPressureDrop[reach];
+  return `${cleanText(network.reachName(reach))}: ${show.text('flow', known(flowM3s))}, ${show.text('pressure', known(dropPa))}`;
+}
+
+function known(value: number): number | null {
+  return Number.isNaN(value) ? null : value;
 }
 
 /** What hovering over a reach shows: its numbers, a line each. */
@@ -143,9 +163,10 @@ function foot({ legend, scaleBar }: MapDrawing): string[] {
   ];
 }
 
-function strokePath({ points, widthMm, colour, cap }: MapStroke): string {
+function strokePath({ points, widthMm, colour, cap }: MapStroke, inner = ''): string {
   const ends = cap === 'butt' ? '' : ` stroke-linecap="${cap}"`;
-  return `<path d="${pathData(points)}" stroke="${colour}" stroke-width="${mm(widthMm)}" stroke-linejoin="round"${ends}/>\n`;
+  const tail = inner === '' ? '/>' : `>${inner}</path>`;
+  return `<path d="${pathData(points)}" stroke="${colour}" stroke-width="${mm(widthMm)}"${ends}${tail}`;
 }
 
 function pathData(points: readonly number[]): string {

@@ -87,10 +87,8 @@ export function keys<const E extends v.ObjectEntries>(
   entries: E,
   example: string,
 ): Field<v.InferOutput<v.StrictObjectSchema<E, undefined>>> {
-  // Without a prototype, so that a key like `toString` is unknown and not inherited.
-  const own: E = Object.assign(Object.create(null), entries);
   const known = Object.keys(entries);
-  const schema = v.strictObject(own, (issue) => {
+  const schema = v.strictObject(entries, (issue) => {
     const key = issue.path?.at(-1)?.key;
     if (issue.expected !== 'never')
       return `needs the key ${issue.expected.replaceAll('"', '')}; ${hint(example)}`;
@@ -98,6 +96,7 @@ export function keys<const E extends v.ObjectEntries>(
     if (near !== null) return `unknown key; did you mean ${quote(near)}?`;
     return `unknown key; known here: ${known.join(', ')}`;
   });
+  // The output does not depend on whether messages are given, which is all that the two types differ in.
   return byShape({ map: schema as Field<v.InferOutput<v.StrictObjectSchema<E, undefined>>> }, hint(example));
 }
 

@@ -3,7 +3,7 @@ import * as v from 'valibot';
 import { InputError } from '../errors.ts';
 import { mergeCase } from './merge.ts';
 import { isPattern, layerKey } from './names.ts';
-import { nearest } from './nearest.ts';
+import { type KeyPath, pathText } from './path-text.ts';
 import { quote } from './quote.ts';
 import { caseSchema, SHEET_KEYS, type SheetValues, sheetSchema } from './schema.ts';
 import { lineAt, type MapEntry, type MapNode, parseTree, type TreeNode, toPlain } from './tree.ts';
@@ -98,17 +98,15 @@ function parseCases(root: MapNode, source: Source): RunSheet['cases'] {
   });
 }
 
-type Path = readonly (string | number)[];
-
 interface Fault {
   readonly line: number;
-  readonly path: Path;
+  readonly path: KeyPath;
   readonly message: string;
   readonly unknown: boolean;
 }
 
 /** Checks a tree and throws the first fault, by line. */
-function validate<T>(schema: v.GenericSchema<unknown, T>, root: MapNode, file: string, prefix: Path): T {
+function validate<T>(schema: v.GenericSchema<unknown, T>, root: MapNode, file: string, prefix: KeyPath): T {
   const result = v.safeParse(schema, toPlain(root));
   if (result.success) return result.output;
   const faults = result.issues.map((issue) => faultOf(issue, root));
@@ -122,7 +120,7 @@ function validate<T>(schema: v.GenericSchema<unknown, T>, root: MapNode, file: s
 function faultOf(issue: v.BaseIssue<unknown>, root: MapNode): Fault {
   const path: (string | number)[] = [];
   for (const { key } of issue.path ?? []) path.push(typeof key === 'number' ? key : String(key));
-  let known: Path = path;
+  let known: KeyPath = path;
   let line = lineAt(root, known);
   while (line === null && known.length > 0) {
     known = known.slice(0, -1);
@@ -134,20 +132,10 @@ function faultOf(issue: v.BaseIssue<unknown>, root: MapNode): Fault {
   return { line: line ?? 1, path: missing ? known : path, message: issue.message, unknown };
 }
 
-/** `ports.feed.pressure`, `targets[0].by`; names with other signs are quoted. */
-function pathText(path: Path): string {
-  let shown = '';
-  for (const step of path) {
-    if (typeof step === 'number') shown += `[${step}]`;
-    else shown += `${shown === '' ? '' : '.'}${/^[\p{L}\p{N}_*-]{1,60}$/u.test(step) ? step : quote(step)}`;
-  }
-  return shown === '' ? 'run sheet' : shown;
-}
-
-function toRunSheet(values: SheetValues, root: MapNode, source: Source, prefix: Path): RunSheet {
-  const lineOf = (path: Path): number | null => lineAt(root, path);
-  const at = (...path: Path): number => lineOf(path) ?? 1;
-  const refuse = (path: Path, message: string): never => {
+function toRunSheet(values: SheetValues, root: MapNode, source: Source, prefix: KeyPath): RunSheet {
+  const lineOf = (path: KeyPath): number | null => lineAt(root, path);
+  const at = (...path: KeyPath): number => lineOf(path) ?? 1;
+  const refuse = (path: KeyPath, message: string): never => {
     throw new InputError(
       `${source.file}:${lineOf(path) ?? 1}`,
       `${pathText([...prefix, ...path])}: ${message}`,
@@ -218,7 +206,7 @@ function toRunSheet(values: SheetValues, root: MapNode, source: Source, prefix: 
   };
 }
 
-type Refuse = (path: Path, message: string) => never;
+type Refuse = (path: KeyPath, message: string) => never;
 
 function refuseLayerTwins(values: SheetValues, refuse: Refuse): void {
   const first = new Map<string, string>();
@@ -244,10 +232,9 @@ function refusePatterns(values: SheetValues, refuse: Refuse): void {
   }
   for (const [i, target] of (values.targets ?? []).entries()) {
     if (!isPattern(target.name)) continue;
-    const near = nearest(target.name.replaceAll('*', ''), Object.keys(values.channels ?? {}));
     refuse(
       ['targets', i, target.on],
-      `${quote(target.name)} is a pattern; a target is one ${target.on}${near === null ? '' : ', named in full'}`,
+      `${quote(target.name)} is a pattern; a target is one ${target.on}, named in full`,
     );
   }
 }

@@ -20,6 +20,7 @@ import {
   type YAMLError,
 } from 'yaml';
 import { InputError } from '../errors.ts';
+import { type KeyPath, pathText } from './path-text.ts';
 import { quote } from './quote.ts';
 
 export interface TextNode {
@@ -67,7 +68,7 @@ export function parseTree(text: string, file: string): MapNode {
   if (contents === null || (isScalar(contents) && contents.source === '' && contents.type === 'PLAIN')) {
     return { kind: 'map', entries: new Map(), line: 1 };
   }
-  const root = toTree(contents, file, at, null);
+  const root = toTree(contents, file, at, null, []);
   if (root.kind !== 'map') {
     throw new InputError(
       `${file}:${root.line}`,
@@ -208,7 +209,13 @@ function lowerFirst(message: string): string {
   return message.charAt(0).toLowerCase() + message.slice(1);
 }
 
-function toTree(node: ParsedNode | null, file: string, at: LineAt, keyLine: number | null): TreeNode {
+function toTree(
+  node: ParsedNode | null,
+  file: string,
+  at: LineAt,
+  keyLine: number | null,
+  path: KeyPath,
+): TreeNode {
   if (node === null) return { kind: 'text', text: '', line: keyLine ?? 1, empty: true };
   const line = at(node.range[0]);
   if (isAlias(node)) throw new InputError(`${file}:${line}`, starMessage(`*${node.source}`));
@@ -228,13 +235,17 @@ function toTree(node: ParsedNode | null, file: string, at: LineAt, keyLine: numb
     };
   }
   if (isSeq(node)) {
-    const items = node.items.map((item) => toTree(item, file, at, line));
+    const items = node.items.map((item, i) => toTree(item, file, at, line, [...path, i]));
     return { kind: 'list', items, line };
   }
   if (isMap(node)) {
     const entries = new Map<string, MapEntry>();
+    let previous: string | null = null;
     for (const { key, value } of node.items) {
       const read = keyOf(key, file, at, line);
+      if (value === null && previous !== null)
+        refuseComma(entries.get(previous), read, [...path, previous], file);
+      previous = read.text;
       const earlier = entries.get(read.text);
       if (earlier !== undefined) {
         throw new InputError(
@@ -242,7 +253,10 @@ function toTree(node: ParsedNode | null, file: string, at: LineAt, keyLine: numb
           `key ${quote(read.text)} is there twice (first in line ${earlier.line}); keep one of them`,
         );
       }
-      entries.set(read.text, { node: toTree(value, file, at, read.line), line: read.line });
+      entries.set(read.text, {
+        node: toTree(value, file, at, read.line, [...path, read.text]),
+        line: read.line,
+      });
     }
     return { kind: 'map', entries, line };
   }
@@ -270,6 +284,21 @@ function keyOf(
     );
   }
   return { text, line };
+}
+
+/** In braces, `{ depth: 50,5 um }` is the value 50 and then a key `5 um` without a value. */
+function refuseComma(
+  before: MapEntry | undefined,
+  key: { readonly text: string; readonly line: number },
+  path: KeyPath,
+  file: string,
+): void {
+  if (before?.node.kind !== 'text' || !/^[+-]?\d+$/.test(before.node.text) || !/^\d/.test(key.text)) return;
+  const [whole, rest] = [before.node.text, key.text];
+  throw new InputError(
+    `${file}:${key.line}`,
+    `${pathText(path)}: ${quote(`${whole},${rest}`)} has a comma; decimals take a point; write for example ${quote(`${whole}.${rest}`)}`,
+  );
 }
 
 /** Names that plain objects of the language treat specially. */

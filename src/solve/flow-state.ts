@@ -1,7 +1,7 @@
 /**
  * Pressures and flows of a network, in phases that can be repeated by themselves:
  *   prepareFlow   the network → its graph with tubing, its parts
- *   factorFlow    + which ports hold a pressure or a flow, + resistances → factor (the analysis is kept per set of kinds)
+ *   factorFlow    + which ports hold a pressure or a flow, + resistances → factor (the analysis is kept per set of such ports)
  *   flowStateOf   + the pressures and flows themselves → FlowState
  * A port's tubing is one edge more, to a node of its own at the far end, where the drive acts; so a sealed port with tubing hangs on the chip as a dead end, and a
  * syringe pump's supply pressure is simply the pressure of that node.
@@ -140,11 +140,11 @@ function outlookOf(
     if (Number.isNaN(resistances.reach[r])) unsized[parts.partOfNode[network.reachFrom[r]]] = 1;
   }
   return parts.portsOfPart.map((ports, part): PartOutlook => {
-    const held = ports.some((port) => kinds[port] === 'pressure');
+    const referenced = ports.some((port) => kinds[port] === 'pressure');
     const heldPort = ports.find((port) => kinds[port] === 'flow');
-    if (!held && heldPort === undefined) return { kind: 'undriven' };
-    if (unsized[part] === 1) return { kind: 'unsized', floating: !held };
-    return held || heldPort === undefined ? { kind: 'referenced' } : { kind: 'floating', heldPort };
+    if (!referenced && heldPort === undefined) return { kind: 'undriven' };
+    if (unsized[part] === 1) return { kind: 'unsized', floating: !referenced };
+    return referenced || heldPort === undefined ? { kind: 'referenced' } : { kind: 'floating', heldPort };
   });
 }
 
@@ -159,8 +159,8 @@ function analysisFor(
   partOutlook.forEach((outlook, part) => {
     if (outlook.kind === 'undriven' || outlook.kind === 'unsized') return;
     for (const port of parts.portsOfPart[part]) {
-      if (kinds[port] === 'pressure' || (outlook.kind === 'floating' && outlook.heldPort === port))
-        fixed.push(driveNode[port]);
+      const held = outlook.kind === 'floating' && outlook.heldPort === port;
+      if (held || kinds[port] === 'pressure') fixed.push(driveNode[port]);
       else if (kinds[port] === 'flow') injected.push(driveNode[port]);
     }
   });
@@ -231,7 +231,7 @@ function holdsConflict(
   return false;
 }
 
-/** Load of the graph for these drives, as sensitivities need it too. In a part without reference the held port gives what the others take. */
+/** Load of the graph for these drives, as sensitivities need it too. */
 export function loadOf(factor: FlowFactor, drives: readonly PortDrive[]): GraphLoad {
   const { graph, driveNode } = factor.prepared;
   const fixedPressure = new Float64Array(graph.nodeCount);
@@ -312,19 +312,23 @@ function stateFrom(
   };
 }
 
-/** Flow into the chip at each port. Two ports that hold one node at one pressure share its flow in a way that nothing tells: NaN. */
+/**
+ * Flow into the chip at each port: found at those whose pressure is held, given at the others.
+ * Two ports that hold one node at one pressure share its flow in a way that nothing tells: NaN.
+ */
 function portFlows(factor: FlowFactor, drives: readonly PortDrive[], graphFlow: GraphFlow): Float64Array {
   const { driveNode } = factor.prepared;
   const given = givenFlows(factor, drives);
+  const held = Uint8Array.from(drives, ({ kind }) => (kind === 'pressure' ? 1 : 0));
+  for (const outlook of factor.partOutlook) if (outlook.kind === 'floating') held[outlook.heldPort] = 1;
   const givenAt = new Map<number, number>();
   const heldBy = new Map<number, number>();
-  drives.forEach((drive, port) => {
-    const node = driveNode[port];
-    if (drive.kind === 'flow') givenAt.set(node, (givenAt.get(node) ?? 0) + given[port]);
-    if (drive.kind === 'pressure') heldBy.set(node, (heldBy.get(node) ?? 0) + 1);
+  driveNode.forEach((node, port) => {
+    if (held[port] === 1) heldBy.set(node, (heldBy.get(node) ?? 0) + 1);
+    else givenAt.set(node, (givenAt.get(node) ?? 0) + given[port]);
   });
-  return Float64Array.from(drives, (drive, port) => {
-    if (drive.kind !== 'pressure') return given[port];
+  return given.map((q, port) => {
+    if (held[port] === 0) return q;
     const node = driveNode[port];
     return heldBy.get(node) === 1 ? graphFlow.inflow[node] - (givenAt.get(node) ?? 0) : Number.NaN;
   });

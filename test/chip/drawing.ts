@@ -17,7 +17,7 @@ export type Draft = (ordinal: number) => LayoutItem;
 
 export function line(coordinates: readonly number[], closed = false): Centreline {
   const points = Float64Array.from(coordinates);
-  return { points, closed, bendRadius: new Float64Array(points.length / 2 - 1) };
+  return { points, closed, bendRadius: new Float64Array(Math.max(0, points.length / 2 - 1)) };
 }
 
 /** A stroke 0.2 wide through the coordinates x0 y0 x1 y1 … */

@@ -23,7 +23,10 @@ export function turnedSvg(svg: string, turn: Turn): string {
   if (root === null) throw new Error('the fixture has no svg element');
   const box = /\bviewBox="([^"]*)"/.exec(root[0]);
   if (box === null) throw new Error('a fixture needs a viewBox, so that it can be turned');
-  const [x, y, width, height] = box[1].trim().split(/[\s,]+/).map(Number);
+  const [x, y, width, height] = box[1]
+    .trim()
+    .split(/[\s,]+/)
+    .map(Number);
   const corners = [
     [x, y],
     [x + width, y],
@@ -37,7 +40,10 @@ export function turnedSvg(svg: string, turn: Turn): string {
   const tag = root[0]
     .replace(box[0], `viewBox="${left} ${top} ${newWidth} ${newHeight}"`)
     .replace(/\bwidth="([\d.]+)([^"]*)"/, (_, size, unit) => `width="${(size * newWidth) / width}${unit}"`)
-    .replace(/\bheight="([\d.]+)([^"]*)"/, (_, size, unit) => `height="${(size * newHeight) / height}${unit}"`);
+    .replace(
+      /\bheight="([\d.]+)([^"]*)"/,
+      (_, size, unit) => `height="${(size * newHeight) / height}${unit}"`,
+    );
   const start = root.index + root[0].length;
   const end = svg.lastIndexOf('</svg>');
   const [a, b, c, d] = turn.matrix;

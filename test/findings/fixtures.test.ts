@@ -3,6 +3,7 @@ import { join } from 'node:path';
 import { describe, expect, it } from 'vitest';
 import { RULES } from '../../src/findings/rules.ts';
 import type { Finding, FindingReport } from '../../src/findings/types.ts';
+import { RULE_MEASURES } from '../../src/runsheet/measures.ts';
 import { TURNS, type Turn, turnedPoint, turnedSvg } from './drawing-turns.ts';
 import { findingsOf } from './findings-of.ts';
 
@@ -43,10 +44,16 @@ const KNOWN_RULES = new Set([...RULES.flatMap(({ names }) => names), 'unmatched-
 
 for (const family of readdirSync(FOLDER).sort()) {
   describe(`fixtures of ${family}`, () => {
-    const cases = readdirSync(join(FOLDER, family)).filter((file) => file.endsWith('.svg'));
-    for (const file of cases.sort()) {
-      const stem = join(FOLDER, family, file.slice(0, -'.svg'.length));
-      const name = file.slice(0, -'.svg'.length).replaceAll('-', ' ');
+    const files = readdirSync(join(FOLDER, family)).sort();
+    const cases = stemsOf(files, '.expected.json');
+
+    it('has a drawing for every list of expected findings, and such a list for every drawing', () => {
+      expect(stemsOf(files, '.svg')).toEqual(cases);
+    });
+
+    for (const file of cases) {
+      const stem = join(FOLDER, family, file);
+      const name = file.replaceAll('-', ' ');
       const svg = readFileSync(`${stem}.svg`, 'utf8');
       const sheet = existsSync(`${stem}.run.yaml`) ? readFileSync(`${stem}.run.yaml`, 'utf8') : null;
       const expected = readExpected(`${stem}.expected.json`);
@@ -61,6 +68,10 @@ for (const family of readdirSync(FOLDER).sort()) {
         for (const rule of expected.not_run ?? []) expect(notRun).toContain(rule);
       });
 
+      it(`says in whole sentences what is wrong in "${name}", in a unit that accept knows`, () => {
+        for (const finding of findingsOf(svg, sheet).findings) expectSound(finding);
+      });
+
       for (const turn of expected.turns === false ? [] : TURNS) {
         it(`finds the same in "${name}" ${turn.name}, at the same places`, () => {
           const plain = looked(findingsOf(svg, sheet), expected);
@@ -71,6 +82,10 @@ for (const family of readdirSync(FOLDER).sort()) {
       }
     }
   });
+}
+
+function stemsOf(files: readonly string[], ending: string): readonly string[] {
+  return files.filter((file) => file.endsWith(ending)).map((file) => file.slice(0, -ending.length));
 }
 
 function readExpected(path: string): Expected {
@@ -110,6 +125,31 @@ function agreed(value: number | null, expected: number, within: number): number 
 
 function identity({ rule, severity, names, accepted }: Finding): string {
   return `${severity} ${rule} [${names.join(', ')}]${accepted === null ? '' : ' accepted'}`;
+}
+
+/** SI units of the quantities that a rule may measure in, as accept reads its ceilings. */
+const UNIT_OF: Readonly<Record<string, string>> = {
+  length: 'm',
+  ratio: '',
+  share: '',
+  angle: 'rad',
+  pressure: 'Pa',
+  wall_shear: 'Pa',
+  time: 's',
+  flow: 'm³/s',
+};
+
+function expectSound({ rule, message, fix, names, measured, limit, unit }: Finding): void {
+  for (const text of [message, fix, ...names]) {
+    expect(text).not.toMatch(/NaN|undefined|null|Infinity|\[object/);
+    expect(text).not.toBe('');
+  }
+  expect((limit === null) === (unit === null), `${rule} has a limit and a unit, or neither`).toBe(true);
+  if (measured !== null) expect(unit, `${rule} measures in a unit`).not.toBeNull();
+  const measure = RULE_MEASURES.get(rule);
+  if (unit !== null && measure !== undefined && measure.quantities.length > 0) {
+    expect(measure.quantities.map((quantity) => UNIT_OF[quantity])).toContain(unit);
+  }
 }
 
 function expectAt(turned: readonly Finding[], plain: Finding, turn: Turn): void {

@@ -82,6 +82,14 @@ describe('the JSON document', () => {
     );
   });
 
+  test('writes −0 as 0', () => {
+    const result: SingleResult = {
+      ...buildResult(sampleInput()),
+      balance: { worst_imbalance: -0, worst_node: null },
+    };
+    expect(text(result)).toContain('"worst_imbalance":0,');
+  });
+
   test('is the same text twice and ends with one line end', () => {
     const once = text(buildResult(sampleInput()));
     expect(text(buildResult(sampleInput()))).toBe(once);

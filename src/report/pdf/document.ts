@@ -1,5 +1,6 @@
 import type { Report } from '../report.ts';
 import { verdictLine } from '../verdict-line.ts';
+import { writeCases } from './cases.ts';
 import { writeCautions } from './cautions.ts';
 import { isoDate, pageContext } from './context.ts';
 import { writeFindings } from './findings.ts';
@@ -9,9 +10,11 @@ import { writeHoles } from './holes.ts';
 import { writeMaps } from './maps.ts';
 import { writeModel } from './model.ts';
 import { type Fonts, Paper, type PaperSize } from './paper.ts';
+import { writePump } from './pump.ts';
 import { writeReaches } from './reaches.ts';
 import { writeRunSheet } from './run-sheet.ts';
 import { writeSegments } from './segments.ts';
+import { writeSpread } from './spread.ts';
 
 export interface PdfOptions {
   /** The embedded font's files (TrueType), with every glyph that the pages use. */
@@ -32,8 +35,11 @@ export function writePdf(report: Report, options: PdfOptions): Promise<Uint8Arra
   const title = sheet?.title ?? result.layout.file;
   const paper = new Paper({ ...options, title, subject: `Check of ${result.layout.file}`, creator });
   const contexts = cases.map((one) => pageContext(paper, report, one, options.date));
+  writeCases(paper, report);
   for (const context of contexts) {
     writeFrontPage(context);
+    writePump(context);
+    writeSpread(context);
     writeFindings(context);
     writeMaps(context);
     writeReaches(context);

@@ -128,7 +128,7 @@ function paintPlace(
     () => {
       inMillimetres(paper, x, y, () => {
         doc.save();
-        doc.rect(0, 0, picture.widthMm, picture.heightMm).clip();
+        doc.rect(0, 0, picture.widthMm, picture.viewHeightMm).clip();
         for (const ring of picture.edge) {
           doc.moveTo(ring[0], ring[1]);
           for (let i = 2; i < ring.length; i += 2) doc.lineTo(ring[i], ring[i + 1]);
@@ -138,18 +138,9 @@ function paintPlace(
         for (const hole of picture.holes)
           doc.circle(hole.x, hole.y, hole.radiusMm).lineWidth(0.3).fillAndStroke('#ffffff', '#202020');
         paintMark(doc, picture);
-        const { scaleBar } = picture;
-        doc
-          .rect(
-            scaleBar.x - 1,
-            scaleBar.y - 1.2,
-            scaleBar.lengthMm + 2.5,
-            picture.heightMm - scaleBar.y + 1.2,
-          )
-          .fill('#ffffff');
-        paintScaleBar(paper, scaleBar);
         doc.restore();
-        doc.rect(0, 0, picture.widthMm, picture.heightMm).lineWidth(0.2).strokeColor('#888888').stroke();
+        paintScaleBar(paper, picture.scaleBar);
+        doc.rect(0, 0, picture.widthMm, picture.viewHeightMm).lineWidth(0.2).strokeColor('#888888').stroke();
       });
       for (const label of picture.labels) paintLabel(paper, label, x, y);
       const { scaleBar } = picture;

@@ -1,8 +1,17 @@
 import type { Chip } from '../../chip/types.ts';
 import { drawMap } from '../map.ts';
 import { cleanText } from '../plain-text.ts';
-import { formatMm, formatNumber, formatShare, type Show } from '../quantity.ts';
-import type { PortRow } from '../result-schema.ts';
+import {
+  formatMm,
+  formatNumber,
+  formatShare,
+  largestMagnitude,
+  type Show,
+  type Shown,
+  type Unit,
+} from '../quantity.ts';
+import { hasWindow, outsideWindows, reachesThatMatter, windowTexts } from '../reach-values.ts';
+import type { PortRow, ReachRow } from '../result-schema.ts';
 import { plural, verdictCounts } from '../verdict-line.ts';
 import { BODY, BODY_BOLD, isoDate, type PageContext, SMALL } from './context.ts';
 import { drawingText } from './document.ts';
@@ -31,6 +40,7 @@ export function writeFrontPage(context: PageContext): void {
   const ports = one.part.ports;
   const here = ports.length <= rowsHere ? ports : ports.slice(0, rowsHere);
   writePorts(context, section, 'Ports', here, ports.length - here.length);
+  if (here.length === ports.length) writeReachesThatMatter(context, section, paper.bottom - below - paper.y);
   paper.y = Math.max(paper.y, paper.bottom - below + 6);
   paper.heading(section, 3, 'What went in');
   writeFacts(paper, section, facts, FACTS);
@@ -194,6 +204,63 @@ export function portsTable(
     ),
   );
   return { columns, rows };
+}
+
+const REACHES_SHOWN = 14;
+
+/** What the chip is for, in the room that is left: reaches with a window, or else the most sheared. */
+function writeReachesThatMatter({ paper, one }: PageContext, section: Element, room: number): void {
+  const count = Math.min(REACHES_SHOWN, Math.floor((room - 56) / 9.8));
+  if (count < 2) return;
+  const { network, show } = one;
+  const { rows, windows, of } = reachesThatMatter(one, count);
+  if (rows.length === 0) return;
+  const outside = outsideWindows(one);
+  const channels = new Map(network.chip.channels.filter(hasWindow).map((channel) => [channel.name, channel]));
+  const unit = (shown: Shown, pick: (row: ReachRow) => number | null): Unit =>
+    show.unit(shown, largestMagnitude(rows.map(pick)));
+  const flow = unit('flow', (row) => row.flow_m3_s);
+  const shear = unit('wall_shear', (row) => row.wall_shear_floor_peak_pa);
+  const time = unit('residence_time', (row) => row.residence_time_s);
+  const number = (value: number | null, { si }: Unit): string =>
+    value === null ? '–' : formatNumber(value / si);
+  paper.heading(section, 3, windows ? 'Reaches with a window' : 'The most sheared reaches');
+  drawTable(
+    paper,
+    section,
+    [
+      { head: 'reach', align: 'left', width: 'share' },
+      { head: 'flow', unit: flow.text, align: 'right', width: 'fit' },
+      { head: 'floor shear mean', unit: shear.text, align: 'right', width: 'fit' },
+      { head: 'peak', unit: shear.text, align: 'right', width: 'fit' },
+      { head: 'time mean', unit: time.text, align: 'right', width: 'fit' },
+      { head: 'fastest', unit: time.text, align: 'right', width: 'fit' },
+      ...(windows ? [{ head: 'window', align: 'left', width: 'fit' } as const] : []),
+    ],
+    rows.map((row) => {
+      const channel = channels.get(row.channel);
+      const texts = channel === undefined ? [] : windowTexts(channel, show);
+      const isOutside = outside(row.channel, row.name);
+      return {
+        kind: 'cells',
+        ...(isOutside ? { weight: 'bold' } : {}),
+        cells: [
+          isOutside ? `✗ ${row.name}` : row.name,
+          number(row.flow_m3_s, flow),
+          number(row.wall_shear_floor_mean_pa, shear),
+          number(row.wall_shear_floor_peak_pa, shear),
+          number(row.residence_time_s, time),
+          number(row.fastest_time_s, time),
+          ...(windows ? [`${isOutside ? 'outside: ' : ''}${texts.join('; ')}`] : []),
+        ],
+      };
+    }),
+    { size: 6.8 },
+  );
+  if (of > rows.length) {
+    paper.y -= 4;
+    paper.paragraph(section, `… and ${of - rows.length} more in the table of reaches.`, SMALL);
+  }
 }
 
 function inputFacts({ report, one, date }: PageContext): readonly (readonly [string, string])[] {

@@ -11,8 +11,7 @@ import { cells, drawTable } from './table.ts';
 export function writeHandCheck(context: PageContext): void {
   const { paper, one } = context;
   const row = reachToCheck(one);
-  paper.newPage('portrait');
-  const section = paper.section();
+  const section = paper.start('portrait', 330);
   paper.heading(section, 1, 'Hand check');
   if (row === null) {
     paper.paragraph(section, 'No reach has a known flow, so there is nothing to check by hand.', BODY);
@@ -130,7 +129,7 @@ function writeBalance({ paper, one }: PageContext, section: Element): void {
   const share = into === 0 && out === 0 ? 0 : Math.abs(into - out) / Math.max(into, out);
   paper.paragraph(
     section,
-    `Into the chip ${show.text('flow', into)}, out of it ${show.text('flow', out)}: they differ by ${formatNumber(share, 2)} of the larger.` +
+    `Into the chip ${show.text('flow', into)}, out of it ${show.text('flow', out)}: ${share === 0 ? 'they agree' : `they differ by ${formatNumber(share, 2)} of the larger`}.` +
       (unknown === 0 ? '' : ` Of ${unknown} ports the flow is not known.`),
     BODY,
   );

@@ -5,8 +5,7 @@ import { cells, drawTable } from './table.ts';
 /** Where to drill or punch: from the lower left corner of the chip edge, and in drawing coordinates. */
 export function writeHoles({ paper, one, geometry }: PageContext): void {
   const { chip } = one.network;
-  paper.newPage('portrait');
-  const section = paper.section();
+  const section = paper.start('portrait', 120);
   paper.heading(section, 1, 'Holes');
   if (chip.ports.length === 0) {
     paper.paragraph(section, 'The layout has no holes.', BODY);

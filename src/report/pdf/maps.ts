@@ -1,19 +1,22 @@
 import { drawMap, QUANTITY_TITLES } from '../map.ts';
-import { plural } from '../verdict-line.ts';
 import { type PageContext, SMALL } from './context.ts';
 import { paintMap } from './paint-map.ts';
 import { POINTS_PER_MM } from './paper.ts';
 
-/** Maps of wall shear, flow and residence time, as many on a page as fit. */
+const TEXT_POINTS = 44;
+
+/** Maps of wall shear, flow and residence time, as many on a page as fit: three of a wide chip, one of a tall one. */
 export function writeMaps({ paper, one, geometry, measure, readable }: PageContext): void {
   paper.newPage('portrait');
   const section = paper.section();
   paper.heading(section, 1, 'Maps');
+  paper.paragraph(section, "Numbers beside names are in the legend's unit; all are in the tables.", SMALL);
+  const heightMm = mapHeightMm(paper.bottom - paper.y, paper.width, geometry.bounds);
   for (const quantity of ['shear', 'flow', 'residence'] as const) {
     const drawing = drawMap(one, geometry, {
       quantity,
       widthMm: paper.width / POINTS_PER_MM,
-      heightMm: 215,
+      heightMm,
       labelSizeMm: 2,
       measure,
       readable,
@@ -21,7 +24,7 @@ export function writeMaps({ paper, one, geometry, measure, readable }: PageConte
       reachLabels: true,
     });
     const height = drawing.heightMm * POINTS_PER_MM;
-    paper.need(height + 50);
+    paper.need(height + TEXT_POINTS - 2);
     const title = QUANTITY_TITLES[quantity];
     paper.heading(section, 2, `${title[0].toUpperCase()}${title.slice(1)}`);
     paintMap(
@@ -36,12 +39,19 @@ export function writeMaps({ paper, one, geometry, measure, readable }: PageConte
     const left =
       drawing.unlabelled === 0
         ? ''
-        : ` ${plural(drawing.unlabelled, 'reach').replace('reachs', 'reaches')} found no room for a label: see the table.`;
-    paper.paragraph(
-      section,
-      `${drawing.caption} Numbers beside names are in the legend's unit.${left}`,
-      SMALL,
-    );
-    paper.y += 8;
+        : ` ${drawing.unlabelled} ${drawing.unlabelled === 1 ? 'reach' : 'reaches'} without a label: no room.`;
+    paper.paragraph(section, `${drawing.caption}${left}`, SMALL);
+    paper.y += 3;
   }
+}
+
+/** Height of one map: a third of the page, half of it or all, whatever costs a chip of this shape little of its size. */
+function mapHeightMm(
+  room: number,
+  width: number,
+  bounds: { readonly width: number; readonly height: number },
+): number {
+  const natural = (width * bounds.height) / bounds.width / POINTS_PER_MM + 16;
+  const each = [3, 2, 1].map((maps) => (room / maps - TEXT_POINTS) / POINTS_PER_MM);
+  return each.find((height) => height >= 0.8 * natural) ?? each[2];
 }

@@ -1,5 +1,6 @@
 import type { Chip, Sourced } from '../../chip/types.ts';
-import { formatNumber, formatShare } from '../quantity.ts';
+import { formatMm, formatNumber, formatShare } from '../quantity.ts';
+import type { ReportedCase } from '../report.ts';
 import { BODY, type PageContext } from './context.ts';
 import type { Element, Paper } from './paper.ts';
 import { cells, drawTable, type TableRow } from './table.ts';
@@ -7,8 +8,7 @@ import { cells, drawTable, type TableRow } from './table.ts';
 /** The model in words, its formulas with their sources, and the depths and limits in force with where each came from. */
 export function writeModel({ paper, one }: PageContext): void {
   const { chip } = one.network;
-  paper.newPage('portrait');
-  const section = paper.section();
+  const section = paper.start('portrait', 500);
   paper.heading(section, 1, 'Model');
   for (const text of modelTexts(chip)) paper.paragraph(section, text, BODY);
   paper.y += 4;
@@ -24,6 +24,7 @@ export function writeModel({ paper, one }: PageContext): void {
     FORMULAS.map((texts) => cells(...texts)),
     { size: 6.8 },
   );
+  writeJoints(paper, section, one);
   writeLayers(paper, section, chip);
   writeLimits(paper, section, chip);
 }
@@ -86,6 +87,71 @@ const FORMULAS: readonly (readonly [string, string, string])[] = [
     'T. A. Davis, ACM Trans. Math. Softw. 31 (2005) 587',
   ],
 ];
+
+/** Joints by kind, and what they come to beside plain centrelines. */
+function writeJoints(paper: Paper, section: Element, one: ReportedCase): void {
+  const { network } = one;
+  if (network.joints.length === 0) return;
+  paper.heading(section, 2, 'Joints');
+  drawTable(
+    paper,
+    section,
+    [
+      { head: 'kind', align: 'left', width: 'share' },
+      { head: 'number', align: 'right', width: 'fit' },
+      { head: 'together they add', unit: 'mm', align: 'right', width: 'fit' },
+      { head: 'one could be off by ±', unit: 'mm', align: 'right', width: 'fit' },
+      { head: 'first at x', unit: 'mm', align: 'right', width: 'fit' },
+      { head: 'y', unit: 'mm', align: 'right', width: 'fit' },
+    ],
+    network.joints.map(({ kind, count, addedMm, boundMm, xMm, yMm }) =>
+      cells(kind, String(count), formatNumber(addedMm), formatNumber(boundMm), formatMm(xMm), formatMm(yMm)),
+    ),
+  );
+  const sum = (lengths: Float64Array): number => lengths.reduce((total, length) => total + length, 0);
+  const centreline = formatNumber(sum(network.reachCentrelineMm));
+  const counted = formatNumber(sum(network.reachDuctMm));
+  paper.paragraph(
+    section,
+    network.chip.joints === 'resolved'
+      ? `All reaches together: ${counted} mm of duct as counted here, ${centreline} mm by centrelines alone.`
+      : `The numbers of this document count centrelines: ${counted} mm of duct in all. With joints: resolved the lengths above would be added.`,
+    BODY,
+  );
+  writeCentrelineFlows(paper, section, one);
+}
+
+const PORT_BOUND = 60;
+
+/** What centreline counting would have said of each port's flow, beside what is said here. */
+function writeCentrelineFlows(
+  paper: Paper,
+  section: Element,
+  { network, part, show, centrelineFlow }: ReportedCase,
+): void {
+  if (centrelineFlow === null || network.chip.joints !== 'resolved') return;
+  const flows = centrelineFlow().portFlow;
+  const ports = part.ports.slice(0, PORT_BOUND);
+  drawTable(
+    paper,
+    section,
+    [
+      { head: 'port', align: 'left', width: 'share' },
+      { head: 'flow into chip, as counted', align: 'right', width: 'fit' },
+      { head: 'by centrelines alone', align: 'right', width: 'fit' },
+      { head: 'joints not resolved could move it by ±', align: 'right', width: 'fit' },
+    ],
+    ports.map(({ name, flow_m3_s, joint_flow_share }, i) =>
+      cells(
+        name,
+        show.text('flow', flow_m3_s),
+        Number.isFinite(flows[i]) ? show.text('flow', flows[i]) : '–',
+        formatShare(joint_flow_share),
+      ),
+    ),
+  );
+  if (part.ports.length > ports.length) paper.paragraph(section, `… of ${part.ports.length} ports.`, BODY);
+}
 
 const LAYER_BOUND = 500;
 
@@ -166,11 +232,7 @@ function writeLimits(paper: Paper, section: Element, { limits, process, layers }
     ],
     rows,
   );
-  paper.paragraph(
-    section,
-    `The relative slack of every comparison is 1e-9 (${formatShare(1e-9)}), in the drawing's favour.`,
-    BODY,
-  );
+  paper.paragraph(section, "The relative slack of every comparison is 1e-9, in the drawing's favour.", BODY);
 }
 
 function limitRow<T>(what: string, limit: Sourced<T> | null, text: (value: T) => string): TableRow {

@@ -103,6 +103,13 @@ export class Paper {
     this.y = this.top;
   }
 
+  /** A part of the document at the top of a page, or below the last one where at least `height` is left on a page of this kind. */
+  start(orientation: 'portrait' | 'landscape', height: number): Element {
+    if (this.orientation !== orientation || this.y + height > this.bottom) this.newPage(orientation);
+    else if (this.y > this.top) this.y += 10;
+    return this.section();
+  }
+
   /** Turns to a new page when less than this is left. */
   need(height: number): void {
     if (this.y + height > this.bottom) this.newPage();

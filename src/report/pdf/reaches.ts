@@ -14,8 +14,9 @@ import { plural } from '../verdict-line.ts';
 import { type PageContext, SMALL } from './context.ts';
 import { type Column, drawTable, type TableRow } from './table.ts';
 
-/** Rows of the table; a larger network's further reaches are in the CSV and JSON. */
-export const REACH_BOUND = 2500;
+/** All reaches are printed up to here; of a larger network the first ones, and the rest is in the CSV and JSON. */
+export const REACH_BOUND = 2000;
+export const REACHES_OF_MANY = 500;
 
 /** The table of reaches, grouped by channel, each channel's windows at the head of its reaches. */
 export function writeReaches({ paper, one }: PageContext): void {
@@ -25,7 +26,7 @@ export function writeReaches({ paper, one }: PageContext): void {
   const section = paper.section();
   paper.heading(section, 1, 'Reaches');
   paper.paragraph(section, LEGEND, SMALL);
-  const order = byChannel(one).subarray(0, REACH_BOUND);
+  const order = byChannel(one).subarray(0, network.reachCount <= REACH_BOUND ? REACH_BOUND : REACHES_OF_MANY);
   const rows = Array.from(order, (reach) => one.part.reaches.at(reach));
   const numbers = numberColumns(rows, one.show);
   drawTable(paper, section, tableColumns(numbers), tableRows(one, order, rows, numbers), { size: 6.5 });
@@ -42,7 +43,7 @@ export function writeReaches({ paper, one }: PageContext): void {
 const LEGEND =
   'Flow and pressure drop are positive from → to, in drawn direction. Drawn: centreline outside wells; off: what joining rules and joints took off (−) or added; ' +
   'duct: the length that resists flow. Shear of the walls along the flow: floor (and lid) and sides, mean over the wall and peak in its middle. ' +
-  'Time: mean is volume over flow, fastest is on the axis. –: does not exist. All columns in SI units, and more of them, are in the CSV file.';
+  'Time: mean is volume over flow, fastest is on the axis. ✗ and bold: outside a window, see findings. –: does not exist. All columns in SI units, and more of them, are in the CSV file.';
 
 interface NumberColumn {
   readonly head: string;
@@ -154,10 +155,15 @@ function tableRows(
       table.push({ kind: 'group', text: `${row.channel}, layer ${row.layer}` });
     }
     current = index;
+    const isOutside = outside(row.channel, row.name);
     table.push({
       kind: 'cells',
-      weight: outside(row.channel, row.name) ? 'bold' : undefined,
-      cells: [row.name, `${row.from} → ${row.to}`, ...numbers.map(({ text }) => text(row))],
+      ...(isOutside ? { weight: 'bold' } : {}),
+      cells: [
+        isOutside ? `✗ ${row.name}` : row.name,
+        `${row.from} → ${row.to}`,
+        ...numbers.map(({ text }) => text(row)),
+      ],
     });
   });
   return table;
@@ -173,5 +179,5 @@ function groupOf({ network }: ReportedCase, order: Int32Array, i: number): boole
 
 function groupText(channel: Channel, row: ReachRow, show: Show): string {
   const windows = windowTexts(channel, show);
-  return `${[`${row.channel}, layer ${row.layer === '' ? '(none)' : row.layer}`, ...windows].join('; ')}`;
+  return [`${row.channel}, layer ${row.layer === '' ? '(none)' : row.layer}`, ...windows].join('; ');
 }

@@ -1,0 +1,97 @@
+import { type Command, Option } from 'commander';
+import { draft } from './draft.ts';
+import type { Io } from './io.ts';
+import { FORMATS } from './options.ts';
+import { pump } from './pump.ts';
+import { section } from './section.ts';
+
+/** Adds the commands pump, section and draft to the program. `exitCodes` ends each one's help. */
+export function declarePump(
+  program: Command,
+  io: Io,
+  finish: (code: number) => void,
+  exitCodes: string,
+): void {
+  program
+    .command('pump')
+    .description('find the pump settings that meet the targets of the run sheet, and check the chip at them')
+    .argument('<LAYOUT>', 'the SVG drawing of the chip')
+    .option('-r, --run <FILE>', 'the run sheet (default: LAYOUT with .run.yaml; - for stdin)')
+    .option('--case <NAME>', 'only this case')
+    .option('-o, --out <DIR>', 'where reports go', 'reports')
+    .option('-f, --formats <LIST>', `of ${FORMATS.join(',')}, or none (default: pdf,svg; none with --json)`)
+    .option('--json', 'print the result on stdout as JSON, and nothing else there')
+    .addOption(
+      new Option('--detail <LEVEL>', 'how deep JSON goes')
+        .choices(['ports', 'reaches', 'segments'])
+        .default('segments'),
+    )
+    .addOption(
+      new Option('--colour <QUANTITY>', 'what colours the SVG picture')
+        .choices(['shear', 'pressure', 'flow', 'residence'])
+        .default('pressure'),
+    )
+    .addOption(new Option('--paper <SIZE>', 'paper of the PDF').choices(['a4', 'letter']).default('a4'))
+    .option('-q, --quiet', 'print only the verdict')
+    .option('--no-color', 'no colour on the terminal')
+    .addHelpText(
+      'after',
+      `
+Targets stand in the run sheet, each with the port whose setting is to be found:
+  targets:
+    - { channel: lane-1, wall_shear: 0.3 Pa, at: mean, by: feed }
+
+Examples:
+  rillcheck pump chip.svg                          settings on the terminal, reports/chip.pdf with a page for them
+  rillcheck pump chip.svg --json --detail ports    exact settings as JSON
+  rillcheck pump chip.svg --case culture           only this case of the run sheet
+${exitCodes}`,
+    )
+    .action(async (layout: string, options) => finish(await pump(layout, options, io)));
+
+  program
+    .command('section')
+    .description('one straight duct without a layout: resistance, flow, pressure, wall shear')
+    .requiredOption('--width <LENGTH>', 'width, for example "100 um"')
+    .requiredOption('--depth <LENGTH>', 'depth, for example "50 um"')
+    .requiredOption('--length <LENGTH>', 'length, for example "10 mm"')
+    .option('--flow <FLOW>', 'one of these three: the flow, for example "2 uL/min" …')
+    .option('--pressure <PRESSURE>', '… or the pressure drop, for example "1 kPa" …')
+    .option('--wall-shear <SHEAR>', '… or the mean wall shear on the floor, for example "0.3 Pa"')
+    .option('--viscosity <VISCOSITY>', 'of a fluid of your own (default: water)')
+    .option('--density <DENSITY>', 'of the same fluid')
+    .option('--temperature <TEMPERATURE>', 'of the water (default: 25 degC)')
+    .addOption(
+      new Option('--profile <PROFILE>', 'isotropic is wet-etched: the width is then the mask’s')
+        .choices(['rectangle', 'isotropic'])
+        .default('rectangle'),
+    )
+    .option('--json', 'print the result as JSON')
+    .addHelpText(
+      'after',
+      `
+Examples:
+  rillcheck section --width "500 um" --depth "50 um" --length "20 mm" --flow "10 uL/min"
+  rillcheck section --width "1 mm" --depth "120 um" --length "40 mm" --wall-shear "0.3 Pa" --temperature "37 degC"
+  rillcheck section --width "100 um" --depth "50 um" --length "10 mm" --pressure "12 kPa" --viscosity "1 mPa s" --density "1000 kg/m^3" --json
+${exitCodes}`,
+    )
+    .action(async (options) => finish(await section(options, io)));
+
+  program
+    .command('draft')
+    .description('write a first run sheet for a layout, with what must be filled in marked')
+    .argument('<LAYOUT>', 'the SVG drawing of the chip')
+    .option('-r, --run <FILE>', 'where to write it (default: LAYOUT with .run.yaml; - for stdout)')
+    .option('--force', 'write over a run sheet that is there already')
+    .addHelpText(
+      'after',
+      `
+Examples:
+  rillcheck draft chip.svg              writes chip.run.yaml beside it; never over one that is there
+  rillcheck draft chip.svg --run -      prints it
+  rillcheck draft chip.svg --force      begins anew
+${exitCodes}`,
+    )
+    .action(async (layout: string, options) => finish(await draft(layout, options, io)));
+}

@@ -1,0 +1,236 @@
+import { assembleChip } from '../chip/assemble.ts';
+import { DEFAULT_MAX_REYNOLDS } from '../chip/defaults.ts';
+import type { Channel, Chip } from '../chip/types.ts';
+import type { Layout } from '../layout/types.ts';
+import { formatMm } from '../report/quantity.ts';
+import { isPattern, layerKey } from '../runsheet/names.ts';
+import { commentText, isDraftable, keyText } from './yaml-text.ts';
+
+export interface DraftInput {
+  readonly layout: Layout;
+  /** The layout's file name, without folders. */
+  readonly file: string;
+  /** Name and version of this program. */
+  readonly tool: string;
+}
+
+/** A run sheet larger than 1 MB is not read, so a draft is not made that large. */
+const MOST_BYTES = 900_000;
+
+/**
+ * A first run sheet for a layout: every layer, port and channel found, what must be filled in marked "fill in", a comment for each key.
+ * Valid as it stands: a check answers it with what is still missing. Names are quoted where they need be; those that no run sheet can hold are left as comments.
+ * @throws InputError as assembleChip, for a layout that nothing can be made of
+ */
+export function draftRunSheet({ layout, file, tool }: DraftInput): string {
+  const chip = assembleChip({ layout, sheet: null, file, layoutSha256: '0'.repeat(64) });
+  const whole = [
+    ...head(chip, layout, tool),
+    ...layerLines(chip, layout),
+    ...portLines(chip),
+    ...channelLines(chip, layout),
+    ...rest(chip),
+  ].join('\n');
+  if (Buffer.byteLength(whole) <= MOST_BYTES) return `${whole}\n`;
+  const short = [
+    ...head(chip, layout, tool),
+    ...layerLines(chip, layout),
+    ...portLines(chip),
+    'channels: # the drawing has too many to list here; give windows to those that need them, * matches any run of characters',
+    ...WINDOW_EXAMPLE,
+    ...rest(chip),
+  ].join('\n');
+  return `${short}\n`;
+}
+
+function head(chip: Chip, layout: Layout, tool: string): string[] {
+  const { edge } = chip;
+  const unit = layout.unitStated
+    ? `# unit: 1 mm # size of one unit of the drawing; not needed, the drawing says it (${commentText(layout.unitReason)})`
+    : 'unit: # fill in: size of one unit of the drawing, for example 1 mm; the drawing does not say it';
+  const sides =
+    edge === null || !layout.unitStated
+      ? '# size: [76 mm, 26 mm] # outer size of the chip, checked against the chip edge'
+      : `# size: [${formatMm(edge.sidesMm[0])} mm, ${formatMm(edge.sidesMm[1])} mm] # as drawn; with it the scale is checked`;
+  return [
+    `# Run sheet of ${commentText(chip.file)}, drafted by ${commentText(tool)}.`,
+    '# Lines that say "fill in" wait for a value; a line that begins with # is not read.',
+    '# Every quantity has a unit: 50 um, 12 kPa, 2 uL/min, 0.3 Pa, 37 degC, 5 %.',
+    '',
+    'title: # fill in: what the report is headed with',
+    'drawing: # printed, not interpreted',
+    '#  number: C-114',
+    '#  revision: A',
+    '#  drawn_by: AM',
+    '',
+    unit,
+    sides,
+    edge === null
+      ? 'outline: # fill in: name of the shape that is the chip edge; without one the edge rules are not run'
+      : `# outline: ${edgeName(edge.name)} # the chip edge found; when given here, only what lies inside it is read`,
+    ...portsLayerLine(chip, layout),
+    '# ignore: ["dim-*"] # names of elements or layers that are not read; * matches any run of characters',
+    '# join_within: 1 um # slack of every "on" and "inside" when channels are joined',
+    '# joints: resolved # corners and junctions add resistance of their own; or centreline: they do not',
+    '',
+    'process: # fill in: cast elastomer, etched glass, etched silicon, milled thermoplastic or moulded thermoplastic; gives usual limits',
+    'fluid: water # or { viscosity: 0.94 mPa s, density: 1003 kg/m^3 }, or { glycerol: 30 % by mass }',
+    'temperature: 25 degC # of the chip; fill in: the one it is run at',
+    '',
+  ];
+}
+
+function edgeName(name: string): string {
+  return isDraftable(name) ? keyText(name) : '…';
+}
+
+function portsLayerLine(chip: Chip, layout: Layout): string[] {
+  const names = new Set<string>();
+  for (const { ordinal } of chip.ports) names.add(layout.items[ordinal].groups.at(-1) ?? '');
+  const [only] = names;
+  if (names.size !== 1 || only === undefined || only === '' || !isDraftable(only)) {
+    return ['# ports_layer: holes # only circles of this layer are ports'];
+  }
+  return [
+    `# ports_layer: ${keyText(only)} # only circles of this layer are ports; all that were found lie in it`,
+  ];
+}
+
+/** A layer as drawn: the outermost named group round its channels. */
+interface DrawnLayer {
+  readonly name: string;
+  readonly inner: Set<string>;
+  channels: number;
+  /** Channels whose depth the drawing gives. */
+  withDepth: number;
+}
+
+function layerLines(chip: Chip, layout: Layout): string[] {
+  const layers = new Map<string, DrawnLayer>();
+  let loose = 0;
+  for (const { ordinal, depthOrigin } of chip.channels) {
+    const { groups } = layout.items[ordinal];
+    if (groups.length === 0) {
+      loose++;
+      continue;
+    }
+    const key = layerKey(groups[0]);
+    const layer = layers.get(key) ?? { name: groups[0], inner: new Set<string>(), channels: 0, withDepth: 0 };
+    layers.set(key, layer);
+    layer.channels++;
+    if (depthOrigin === 'drawing') layer.withDepth++;
+    const innermost = groups[groups.length - 1];
+    if (layerKey(innermost) !== key) layer.inner.add(innermost);
+  }
+  const needed = loose > 0 ? `; ${counted(loose, 'channel')} ${loose === 1 ? 'lies' : 'lie'} in no layer` : '';
+  return [
+    `depth: # fill in: etch depth of every layer that is given none below, for example 50 um${needed}`,
+    'layers: # depth of each layer; also profile: isotropic (wet-etched), plane: top, or the word ignore for a layer that is not read',
+    ...[...layers.values()].map(layerLine),
+    '',
+  ];
+}
+
+const MOST_INNER = 8;
+
+function layerLine({ name, inner, channels, withDepth }: DrawnLayer): string {
+  const groups = [...inner].slice(0, MOST_INNER).map(commentText);
+  const holds =
+    groups.length === 0
+      ? ''
+      : `, in its groups ${groups.join(', ')}${inner.size > MOST_INNER ? ' …' : ''} (which may be named here to differ)`;
+  const drawn = withDepth === 0 ? '' : `; the drawing gives ${withDepth} of them a depth, which goes before`;
+  const about = `${counted(channels, 'channel')}${holds}${drawn}`;
+  if (!isDraftable(name))
+    return `# ${commentText(name)}: this name can't stand in a run sheet; rename the layer: ${about}`;
+  return `  ${keyText(name)}: {} # fill in: { depth: 50 um }; ${about}`;
+}
+
+function portLines(chip: Chip): string[] {
+  const lines = chip.ports.map(({ name, drawnName, xMm, yMm, radiusMm }) => {
+    const place = `${formatMm(2 * radiusMm)} mm hole at (${formatMm(xMm)}, ${formatMm(yMm)}) mm`;
+    if (drawnName === null)
+      return `# ${commentText(name)}: ${place} has no name; give it one in the drawing (data-name, label, title or id), then set it here`;
+    if (!isDraftable(drawnName))
+      return `# ${commentText(drawnName)}: ${place}: this name can't stand in a run sheet; rename it`;
+    return `  ${keyText(drawnName)}: {} # fill in; ${place}`;
+  });
+  return [
+    'ports: # { pressure: 12 kPa }, { flow: 2 uL/min } (into the chip is positive), { head: 40 mm }, open or sealed;',
+    '  # with tubing: { pressure: 12 kPa, tubing: { bore: 0.5 mm, length: 300 mm }, expect: in }',
+    ...lines,
+    '',
+  ];
+}
+
+const WINDOW_EXAMPLE = [
+  '#  "lane-*": { wall_shear: { min: 0.05 Pa, max: 0.5 Pa }, residence_time: { max: 60 s }, flow: { min: 1 uL/min } }',
+];
+
+function channelLines(chip: Chip, layout: Layout): string[] {
+  const named = new Map<string, Channel[]>();
+  let unnamed = 0;
+  for (const channel of chip.channels) {
+    if (channel.drawnName === null) unnamed++;
+    else named.set(channel.drawnName, [...(named.get(channel.drawnName) ?? []), channel]);
+  }
+  const lines = [...named].map(([name, channels]) => {
+    const widths = [...new Set(channels.map(({ drawnWidthMm }) => formatMm(drawnWidthMm)))];
+    const layers = [...new Set(channels.flatMap(({ ordinal }) => layout.items[ordinal].groups[0] ?? []))];
+    const about = [
+      channels.length === 1 ? '' : `${channels.length} of this name`,
+      `${widths.slice(0, 4).join(', ')} mm wide`,
+      layers.length === 0 ? '' : `in ${layers.slice(0, 4).map(commentText).join(', ')}`,
+    ].filter((text) => text !== '');
+    const comment = about.join(', ');
+    if (!isDraftable(name) || isPattern(name))
+      return `# ${commentText(name)}: ${comment}: this name can't stand in a run sheet; rename it to give it windows`;
+    return `  ${keyText(name)}: {} # ${comment}`;
+  });
+  return [
+    'channels: # windows that a channel must keep, where it has any; * in a name matches any run of characters',
+    ...WINDOW_EXAMPLE,
+    ...lines,
+    ...(unnamed === 0
+      ? []
+      : [`# ${counted(unnamed, 'channel')} ${unnamed === 1 ? 'has' : 'have'} no name; name in the drawing those that need a window`]),
+    '',
+  ];
+}
+
+function rest(chip: Chip): string[] {
+  const names = chip.ports.flatMap(({ drawnName }) => drawnName ?? []).filter(isDraftable);
+  const by = names[0] === undefined ? 'feed' : keyText(names[0]);
+  const channel = chip.channels
+    .flatMap(({ drawnName }) => drawnName ?? [])
+    .find((name) => isDraftable(name) && !isPattern(name));
+  const on = channel === undefined ? 'lane-1' : keyText(channel);
+  return [
+    'targets: # what the command pump must reach, each by the setting of one port',
+    `#  - { channel: ${on}, wall_shear: 0.3 Pa, at: mean, by: ${by} }`,
+    'pump_limits: # what each pump can do',
+    `#  ${by}: { max_pressure: 200 kPa, max_flow: 1 mL/min }`,
+    '',
+    `limits: # go before those that the process implies; max_reynolds is ${DEFAULT_MAX_REYNOLDS} unless given`,
+    '#  min_width: 20 um',
+    '#  min_wall: 40 um',
+    '#  max_width_to_depth: 10',
+    '#  max_depth_to_width: 2',
+    '#  edge_margin: 1 mm',
+    '#  port_gap: 1 mm',
+    '#  max_pressure: 150 kPa',
+    '#  min_pressure: -30 kPa',
+    'tolerances: # how far fabrication and running vary, for the command spread',
+    '#  depth: 5 %',
+    '#  width: 2 um',
+    '#  temperature: 1 degC',
+    '# cases: { warm: { temperature: 37 degC } } # each is this sheet with its changes, solved and judged on its own',
+    '# show: { flow: uL/min, pressure: mbar, wall_shear: dyn/cm^2 } # units on screen and paper',
+    'accept: # findings that someone has looked at and takes on',
+    '#  - { rule: thin-wall, at: lane-1, up_to: 35 um, because: "measured on the last batch", by: AM, on: 2026-05-04 }',
+  ];
+}
+
+function counted(count: number, noun: string): string {
+  return `${count} ${noun}${count === 1 ? '' : 's'}`;
+}

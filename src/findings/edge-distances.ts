@@ -1,0 +1,181 @@
+import Flatten from '@flatten-js/core';
+import Flatbush from 'flatbush';
+import type { ChipEdge } from '../chip/types.ts';
+import { segmentDistance } from '../geometry/segment.ts';
+import type { Line } from './closest.ts';
+import type { FindingContext } from './context.ts';
+import { lineOf, outlineOf } from './painted.ts';
+import { isBelow } from './rule.ts';
+
+/** A channel or well beyond the chip edge, or nearer to it than the margin. */
+export interface EdgeFault {
+  readonly name: string;
+  readonly isHole: boolean;
+  /** From the painted area or rim to the chip edge, mm; below 0 by how far it lies beyond. */
+  readonly gapMm: number;
+  readonly xMm: number;
+  readonly yMm: number;
+  readonly mark: Line;
+}
+
+/** Rounding of coordinates, mm: what touches the edge is not beyond it. */
+const ROUNDING_MM = 1e-9;
+
+/**
+ * Finds what lies beyond the chip edge or within a margin of it: one fault for each run of a channel and for each well.
+ *
+ * Cost: one index query per piece; only pieces that come near the edge are measured exactly. A piece that does not lies
+ * wholly on the side on which it starts.
+ */
+export function findEdgeFaults(context: FindingContext, edge: ChipEdge, marginMm: number): EdgeFault[] {
+  const { chip, network } = context;
+  const { pieces } = network.trace.near;
+  const outline = toOutline(edge.rings);
+  const faults: EdgeFault[] = [];
+
+  for (const port of chip.ports) {
+    const near = measure(outline, [port.xMm, port.yMm, port.xMm, port.yMm], port.radiusMm);
+    if (isFault(near.gapMm, marginMm)) {
+      faults.push(toFault(port.name, true, near));
+    }
+  }
+
+  for (let c = 0; c < pieces.centrelineCount; c++) {
+    const first = pieces.firstPiece[c];
+    let inside = isInside(outline.rings, pieces.x1[first], pieces.y1[first]);
+    let worst: Near | null = null;
+    const { name } = chip.channels[pieces.centrelineChannel[c]];
+    for (let i = first; i < pieces.firstPiece[c + 1]; i++) {
+      let near: Near | null = null;
+      if (comesNear(outline, pieces.half[i] * Math.SQRT2 + marginMm, lineOf(pieces, i))) {
+        near = nearOfPiece(i);
+        inside = isInside(outline.rings, pieces.x2[i], pieces.y2[i]);
+      } else if (!inside) {
+        near = measure(outline, lineOf(pieces, i), pieces.half[i]);
+      }
+      if (near !== null && isFault(near.gapMm, marginMm)) {
+        worst = worst === null ? near : worseOf(worst, near);
+      } else if (worst !== null) {
+        faults.push(toFault(name, false, worst));
+        worst = null;
+      }
+    }
+    if (worst !== null) faults.push(toFault(name, false, worst));
+  }
+  return faults;
+
+  /** Nearest to the edge, or farthest beyond it, over the parts of a piece's painted area. */
+  function nearOfPiece(i: number): Near {
+    const { lines, radii } = outlineOf(chip, pieces, i);
+    return lines.map((line, k) => measure(outline, line, radii[k])).reduce(worseOf);
+  }
+}
+
+/** The worse of two; of equals that along which the distance stays the same, so that its middle is the place. */
+function worseOf(one: Near, two: Near): Near {
+  if (Math.abs(two.gapMm - one.gapMm) <= ROUNDING_MM) return two.isEven && !one.isEven ? two : one;
+  return two.gapMm < one.gapMm ? two : one;
+}
+
+function toFault(name: string, isHole: boolean, { gapMm, xMm, yMm, mark }: Near): EdgeFault {
+  return { name, isHole, gapMm, xMm, yMm, mark };
+}
+
+function isFault(gapMm: number, marginMm: number): boolean {
+  return marginMm > 0 ? isBelow(gapMm, marginMm) : gapMm < -ROUNDING_MM;
+}
+
+interface Near extends Pick<EdgeFault, 'gapMm' | 'xMm' | 'yMm' | 'mark'> {
+  /** The distance is the same along the whole line; the place is its middle. */
+  readonly isEven: boolean;
+}
+
+interface Outline {
+  readonly polygon: Flatten.Polygon;
+  readonly rings: readonly Float64Array[];
+  readonly sides: readonly Line[];
+  readonly index: Flatbush;
+}
+
+function toOutline(rings: readonly Float64Array[]): Outline {
+  const sides: Line[] = [];
+  const polygon = new Flatten.Polygon();
+  for (const ring of rings) {
+    const corners: Flatten.Point[] = [];
+    for (let k = 0; k + 3 < ring.length; k += 2) {
+      if (ring[k] === ring[k + 2] && ring[k + 1] === ring[k + 3]) continue;
+      sides.push([ring[k], ring[k + 1], ring[k + 2], ring[k + 3]]);
+      corners.push(new Flatten.Point(ring[k], ring[k + 1]));
+    }
+    if (corners.length > 2) polygon.addFace(corners);
+  }
+  const index = new Flatbush(Math.max(1, sides.length));
+  for (const [ax, ay, bx, by] of sides) {
+    index.add(Math.min(ax, bx), Math.min(ay, by), Math.max(ax, bx), Math.max(ay, by));
+  }
+  if (sides.length === 0) index.add(0, 0, 0, 0);
+  index.finish();
+  return { polygon, rings, sides, index };
+}
+
+/** Whether a line comes within a distance of the edge. */
+function comesNear({ index, sides }: Outline, withinMm: number, line: Line): boolean {
+  const [ax, ay, bx, by] = line;
+  const hits = index.search(
+    Math.min(ax, bx) - withinMm,
+    Math.min(ay, by) - withinMm,
+    Math.max(ax, bx) + withinMm,
+    Math.max(ay, by) + withinMm,
+  );
+  return hits.some((k) => sides[k] !== undefined && segmentDistance(...line, ...sides[k]) <= withinMm);
+}
+
+/** Distance of all that lies within a radius of a line from the edge; below 0 by how far it reaches beyond. */
+function measure({ polygon, rings }: Outline, line: Line, radius: number): Near {
+  const [ax, ay, bx, by] = line;
+  const start = signed(ax, ay);
+  if (ax === bx && ay === by) return near(start, false);
+  const end = signed(bx, by);
+  const middle = signed((ax + bx) / 2, (ay + by) / 2);
+  const isEven =
+    Math.abs(start.gapMm - end.gapMm) <= ROUNDING_MM && Math.abs(start.gapMm - middle.gapMm) <= ROUNDING_MM;
+  if (isEven) return near(middle, true);
+  const worst = start.gapMm <= end.gapMm ? start : end;
+  if (worst.gapMm < -ROUNDING_MM) return near(worst, false);
+  // Both ends are inside: the nearest place may lie between them, or the line may leave the chip and come back.
+  const [distance, { ps, pe }] = polygon.distanceTo(
+    new Flatten.Segment(new Flatten.Point(ax, ay), new Flatten.Point(bx, by)),
+  );
+  const onLine = segmentDistance(ps.x, ps.y, ps.x, ps.y, ...line);
+  const [on, off] = onLine <= segmentDistance(pe.x, pe.y, pe.x, pe.y, ...line) ? [ps, pe] : [pe, ps];
+  return near({ gapMm: distance, x: on.x, y: on.y, edgeX: off.x, edgeY: off.y }, false);
+
+  function signed(x: number, y: number) {
+    const [distance, { ps, pe }] = polygon.distanceTo(new Flatten.Point(x, y));
+    const isStart = Math.hypot(ps.x - x, ps.y - y) <= Math.hypot(pe.x - x, pe.y - y);
+    const off = isStart ? pe : ps;
+    return { gapMm: isInside(rings, x, y) ? distance : -distance, x, y, edgeX: off.x, edgeY: off.y };
+  }
+
+  /** From the painted area (or its centre line, where that is beyond) to the nearest point of the edge. */
+  function near({ gapMm, x, y, edgeX, edgeY }: ReturnType<typeof signed>, isEvenNear: boolean): Near {
+    const share = gapMm > radius ? radius / gapMm : 0;
+    const xMm = x + share * (edgeX - x);
+    const yMm = y + share * (edgeY - y);
+    return { gapMm: gapMm - radius, xMm, yMm, mark: [xMm, yMm, edgeX, edgeY], isEven: isEvenNear };
+  }
+}
+
+/** Even-odd: whether a ray to the right crosses the rings an odd number of times. */
+function isInside(rings: readonly Float64Array[], x: number, y: number): boolean {
+  let inside = false;
+  for (const ring of rings) {
+    for (let k = 0; k + 3 < ring.length; k += 2) {
+      const ay = ring[k + 1];
+      const by = ring[k + 3];
+      if (ay > y === by > y) continue;
+      if (x < ring[k] + ((y - ay) / (by - ay)) * (ring[k + 2] - ring[k])) inside = !inside;
+    }
+  }
+  return inside;
+}

@@ -1,0 +1,32 @@
+import { doubleStrokes } from './overlaps.ts';
+import { found, type Rule, toFinding } from './rule.ts';
+import { distanceText } from './words.ts';
+
+/** Strokes that say the same thing twice. */
+export const strokeRules: readonly Rule[] = [
+  {
+    names: ['double-stroke'],
+    run: (context) => {
+      const { chip, network } = context;
+      const { pieces } = network.trace.near;
+      return found(
+        doubleStrokes(context).map(({ a, b, lengthMm, limitMm, apartMm, xMm, yMm }) => {
+          const one = chip.channels[pieces.centrelineChannel[a]].name;
+          const two = chip.channels[pieces.centrelineChannel[b]].name;
+          const same = one === two;
+          const pair = same ? `two stretches of ${one}` : `${two} and ${one}`;
+          const offset = apartMm > 0.0005 ? `, ${distanceText(apartMm)} apart at most` : '';
+          return toFinding('double-stroke', 'blocker', {
+            message: `${pair} are drawn over each other along ${distanceText(lengthMm)}${offset}: they would be one duct, but count as two; more than ${distanceText(limitMm)} (twice the wider width) is no joint`,
+            fix: same
+              ? `draw that part of ${one} once`
+              : `delete the part of ${two} that runs along ${one}, or move it clear if it is meant to be a channel of its own`,
+            at: { xMm, yMm },
+            names: same ? [one] : [two, one],
+            measure: { value: lengthMm / 1e3, limit: limitMm / 1e3, unit: 'm' },
+          });
+        }),
+      );
+    },
+  },
+];

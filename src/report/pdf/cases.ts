@@ -1,0 +1,165 @@
+import { cleanText } from '../plain-text.ts';
+import { formatNumber, type Show } from '../quantity.ts';
+import { hasWindow, outsideWindows, windowTexts } from '../reach-values.ts';
+import type { Report, ReportedCase } from '../report.ts';
+import type { ReachRow } from '../result-schema.ts';
+import { SMALL } from './context.ts';
+import type { Element, Paper } from './paper.ts';
+import { cells, drawTable, type TableRow } from './table.ts';
+
+/** Cases beside each other in one table; more run on in tables below. */
+const CASES_ABREAST = 4;
+/** Windowed reaches compared; further ones are in the tables of reaches. */
+const MOST_REACHES = 40;
+const MOST_PORTS = 40;
+
+/** The cases of one layout beside each other: verdict, fluid, ports, and what each channel with a window gets. Nothing for a single state. */
+export function writeCases(paper: Paper, report: Report): void {
+  const { cases } = report;
+  if (cases.length < 2) return;
+  paper.newPage('portrait');
+  const section = paper.section();
+  paper.heading(section, 1, 'Cases compared');
+  paper.paragraph(
+    section,
+    `${cases.length} cases of one chip, each solved and judged on its own; the chip is ${report.result.verdict === 'ready' ? 'ready: no case has a blocker' : 'on hold: at least one case has a blocker'}.`,
+    SMALL,
+  );
+  for (let from = 0; from < cases.length; from += CASES_ABREAST)
+    writeTable(paper, section, cases.slice(from, from + CASES_ABREAST));
+}
+
+function writeTable(paper: Paper, section: Element, cases: readonly ReportedCase[]): void {
+  const { rows, more } = rowsOf(cases);
+  drawTable(
+    paper,
+    section,
+    [
+      { head: '', align: 'left', width: 'wrap' },
+      ...cases.map(({ name }) => ({ head: cleanText(name ?? ''), align: 'right', width: 'wrap' }) as const),
+    ],
+    rows,
+    { size: 7 },
+  );
+  if (more > 0)
+    paper.paragraph(section, `… and ${more} more reaches with a window: see the tables of reaches.`, SMALL);
+}
+
+function rowsOf(cases: readonly ReportedCase[]): {
+  readonly rows: readonly TableRow[];
+  readonly more: number;
+} {
+  const row = (label: string, text: (one: ReportedCase, i: number) => string): TableRow =>
+    cells(label, ...cases.map(text));
+  const rows: TableRow[] = [
+    { kind: 'cells', cells: ['verdict', ...cases.map(({ part }) => part.verdict)], weight: 'bold' },
+    row(
+      'blockers, cautions, notes',
+      ({ part: { counts } }) => `${counts.blockers}, ${counts.cautions}, ${counts.notes}`,
+    ),
+    row('accepted', ({ part }) => String(part.counts.accepted)),
+    row('rules of blockers', ({ part }) => blockersText(part.findings)),
+    { kind: 'group', text: 'Fluid' },
+    row('fluid', ({ part }) => part.fluid.name),
+    row('temperature', ({ part }) => `${formatNumber(part.fluid.temperature_c)} °C`),
+    row('viscosity', ({ part }) => `${formatNumber(part.fluid.viscosity_pa_s * 1e3)} mPa s`),
+    { kind: 'group', text: 'Ports: condition; pressure at the pump; flow into the chip' },
+  ];
+  const [first] = cases;
+  first.part.ports.slice(0, MOST_PORTS).forEach(({ name }) => {
+    rows.push(row(name, (one) => portText(one, name)));
+  });
+  const { names, more } = windowedReaches(cases);
+  if (names.length > 0) {
+    rows.push({
+      kind: 'group',
+      text: 'Reaches with a window: flow; mean to peak floor shear; mean residence time',
+    });
+    const values = cases.map((one) => reachTexts(one, new Set(names)));
+    for (const name of names) {
+      const texts = values.map((value) => value.get(name) ?? null);
+      const windows = new Set(texts.map((text) => text?.windows ?? ''));
+      // a window that all cases share is said once
+      const [shared] = windows.size === 1 ? windows : [''];
+      rows.push(
+        cells(
+          shared === '' ? name : `${name}: ${shared}`,
+          ...texts.map((text) => {
+            if (text === null) return '–';
+            const own = shared === '' ? ` ${text.windows}` : '';
+            return `${text.verdict}${own}: ${text.values}`;
+          }),
+        ),
+      );
+    }
+  }
+  return { rows, more };
+}
+
+const MOST_RULES = 6;
+
+function blockersText(findings: ReportedCase['part']['findings']): string {
+  const rules = [
+    ...new Set(
+      findings
+        .filter(({ severity, accepted }) => severity === 'blocker' && accepted === null)
+        .map(({ rule }) => rule),
+    ),
+  ];
+  if (rules.length === 0) return 'none';
+  const more = rules.length - MOST_RULES;
+  return `${rules.slice(0, MOST_RULES).join(', ')}${more > 0 ? ` and ${more} more` : ''}`;
+}
+
+function portText({ part, show }: ReportedCase, name: string): string {
+  const port = part.ports.find((candidate) => candidate.name === name);
+  if (port === undefined) return '–';
+  return `${port.condition}; ${show.text('pressure', port.supply_pressure_pa)}; ${show.text('flow', port.flow_m3_s)}`;
+}
+
+/** Names of reaches whose channel has a window in any of the cases, in drawn order of the first case that has it. */
+function windowedReaches(cases: readonly ReportedCase[]): {
+  readonly names: readonly string[];
+  readonly more: number;
+} {
+  const names = new Set<string>();
+  for (const { network } of cases) {
+    for (let reach = 0; reach < network.reachCount; reach++) {
+      if (hasWindow(network.chip.channels[network.reachChannel[reach]])) names.add(network.reachName(reach));
+    }
+  }
+  return { names: [...names].slice(0, MOST_REACHES), more: Math.max(0, names.size - MOST_REACHES) };
+}
+
+interface ReachText {
+  readonly values: string;
+  readonly windows: string;
+  readonly verdict: 'inside' | 'OUTSIDE' | 'no window';
+}
+
+/** By name: what flows, and what the windows say to it. */
+function reachTexts(one: ReportedCase, wanted: ReadonlySet<string>): ReadonlyMap<string, ReachText> {
+  const { network, part, show } = one;
+  const outside = outsideWindows(one);
+  const texts = new Map<string, ReachText>();
+  for (let reach = 0; reach < network.reachCount; reach++) {
+    const name = network.reachName(reach);
+    if (!wanted.has(name)) continue;
+    const channel = network.chip.channels[network.reachChannel[reach]];
+    const windows = windowTexts(channel, show).join('; ');
+    texts.set(name, {
+      values: valuesText(part.reaches.at(reach), show),
+      windows,
+      verdict: windows === '' ? 'no window' : outside(channel.name, name) ? 'OUTSIDE' : 'inside',
+    });
+  }
+  return texts;
+}
+
+function valuesText(row: ReachRow, show: Show): string {
+  return [
+    show.text('flow', row.flow_m3_s),
+    `${show.text('wall_shear', row.wall_shear_floor_mean_pa)} to ${show.text('wall_shear', row.wall_shear_floor_peak_pa)}`,
+    show.text('residence_time', row.residence_time_s),
+  ].join('; ');
+}

@@ -1,0 +1,295 @@
+import type { Spread, SpreadOutput } from '../../spread/types.ts';
+import { cleanText } from '../plain-text.ts';
+import { formatShare, type Show } from '../quantity.ts';
+import { type DistributionChart, distributionChart } from '../spread-charts.ts';
+import {
+  cornerText,
+  overallShares,
+  type RankedCause,
+  rankedCauses,
+  remarks,
+  spreadCells,
+  toleranceText,
+  yieldText,
+} from '../spread-rows.ts';
+import { BODY, BODY_BOLD, type PageContext, SMALL } from './context.ts';
+import type { Element, Paper, TextStyle } from './paper.ts';
+import { cells, drawTable, type TableRow } from './table.ts';
+
+const MOST_CHARTS = 24;
+const MOST_ROWS = 1000;
+const MOST_BARS = 20;
+
+/** How sure each number is: yield, causes, distributions with their windows, the table. Nothing for other commands. */
+export function writeSpread({ paper, one }: PageContext): void {
+  const { spread, show } = one;
+  if (spread === undefined) return;
+  paper.newPage('portrait');
+  const section = paper.section();
+  paper.heading(section, 1, one.name === null ? 'Spread' : `Spread, case ${cleanText(one.name)}`);
+  if (spread.draws < spread.asked) {
+    const text = `Stopped before its end: ${spread.draws} of ${spread.asked} draws were made.`;
+    paper.paragraph(section, text, BODY_BOLD);
+  }
+  paper.paragraph(section, sentence(yieldText(spread)), BODY_BOLD);
+  for (const text of [cornerText(spread, show), ...remarks(spread)]) {
+    if (text !== null) paper.paragraph(section, sentence(text), BODY);
+  }
+  writeTolerances(paper, section, spread, show);
+  writeCauses(paper, section, spread);
+  writeDistributions(paper, section, spread, show);
+  writeNumbers(paper, section, spread, show);
+  paper.paragraph(section, method(spread), SMALL);
+}
+
+function sentence(text: string): string {
+  return text === '' ? '' : `${text[0].toUpperCase()}${text.slice(1)}.`;
+}
+
+function method({ seed, draws }: Spread): string {
+  return (
+    'Two ways that check each other. First order (JCGM 100:2008, 5.1.2): exact derivatives of the network by its adjoint and of the duct by its series, tolerances independent. ' +
+    `Sample: ${draws} draws of a shuffled Halton sequence (A. B. Owen, arXiv:1706.02808), seed ${seed}; each is the whole chip computed anew. Draw i depends on the seed and i alone. ` +
+    'A tolerance is 2 sigma of a normal distribution, or half the width of a uniform one where it is a hard limit. A depth is common to its layer and independent between layers; `width` is one bias of the whole mask, ' +
+    '`width_own` a part of its own for each channel. Joins and duct lengths stay as drawn. A response counts as not linear where the two standard deviations differ by more than 5 %, or the mean lies more than a tenth ' +
+    'of one off the nominal value, beyond the error of the sample. Limits of the drawing itself (widths, walls, margins) are judged on the drawing and are no part of the yield. ' +
+    'The interval of the yield is Wilson’s at 95 %; it says how well the sample knows the yield, not how well the tolerances are known.'
+  );
+}
+
+function writeTolerances(paper: Paper, section: Element, { causes }: Spread, show: Show): void {
+  paper.heading(section, 2, 'Tolerances');
+  drawTable(
+    paper,
+    section,
+    [
+      { head: 'tolerance', align: 'left', width: 'share' },
+      { head: 'what varies', align: 'left', width: 'share' },
+      { head: 'by', align: 'left', width: 'fit' },
+    ],
+    causes.slice(0, MOST_ROWS).map((cause) => cells(cause.key, cause.text, toleranceText(cause, show))),
+  );
+}
+
+/* ---------- causes ---------- */
+
+const INK = '#222222';
+const BAR = '#1b4965';
+const BAND = '#dcebd5';
+const BAND_EDGE = '#5c8a48';
+const CURVE = '#b05a00';
+const LABEL: TextStyle = { size: 6.2 };
+const TITLE: TextStyle = { size: 7, weight: 'bold' };
+
+function writeCauses(paper: Paper, section: Element, spread: Spread): void {
+  const overall = overallShares(spread);
+  if (overall === null) return;
+  const ranked = rankedCauses(overall.shares, spread.causes).slice(0, MOST_BARS);
+  const of = overall.over === 'windows' ? 'every number that a window is set for' : 'every number that moves';
+  paper.heading(section, 2, 'Which tolerance to pay for');
+  paper.paragraph(
+    section,
+    `Share of the variance that each tolerance brings, as a mean over ${of} (first order). Halving a tolerance takes away three quarters of its share.`,
+    SMALL,
+  );
+  const step = 13;
+  const alt = ranked.map(({ cause, share }) => `${cause.key} ${formatShare(rounded(share))}`).join(', ');
+  paper.need(Math.min(ranked.length, 4) * step + 8);
+  for (let done = 0; done < ranked.length; ) {
+    const room = Math.max(1, Math.floor((paper.bottom - paper.y) / step));
+    const part = ranked.slice(done, done + room);
+    paper.tagged(section, 'Figure', () => paintCauses(paper, part, ranked[0].share, step), {
+      alt: `Causes of spread: ${alt}.`,
+    });
+    paper.y += part.length * step + 4;
+    done += part.length;
+    if (done < ranked.length) paper.newPage();
+  }
+}
+
+function paintCauses(paper: Paper, ranked: readonly RankedCause[], largest: number, step: number): void {
+  const { doc } = paper;
+  const left = paper.left + 130;
+  const room = paper.right - left - 50;
+  ranked.forEach(({ cause, share }, i) => {
+    const y = paper.y + i * step;
+    const length = largest > 0 ? (share / largest) * room : 0;
+    paper.putRight(paper.clip(cause.key, 124, LABEL), left - 5, y + 1.5, LABEL);
+    doc.rect(left, y, length, step - 4).fill(BAR);
+    paper.put(formatShare(rounded(share)), left + length + 4, y + 1.5, LABEL);
+  });
+}
+
+/** Per cent to one decimal. */
+function rounded(share: number): number {
+  return Math.round(share * 1000) / 1000;
+}
+
+/* ---------- distributions ---------- */
+
+const CHART_HEIGHT = 104;
+const CHART_GAP = 12;
+const PER_ROW = 3;
+
+function writeDistributions(paper: Paper, section: Element, spread: Spread, show: Show): void {
+  const charts: DistributionChart[] = [];
+  let more = 0;
+  for (const output of byRoom(spread.outputs)) {
+    const chart = charts.length < MOST_CHARTS ? distributionChart(output, spread, show) : null;
+    if (chart !== null) charts.push(chart);
+    else if (charts.length >= MOST_CHARTS) more++;
+  }
+  if (charts.length === 0) return;
+  paper.heading(section, 2, 'Distributions of what has a window');
+  paper.paragraph(
+    section,
+    'Bars: the draws. Line: first order. Shaded: what is asked. Dashed: the nominal value. Those with least room first.',
+    SMALL,
+  );
+  const width = (paper.width - (PER_ROW - 1) * CHART_GAP) / PER_ROW;
+  charts.forEach((chart, i) => {
+    const column = i % PER_ROW;
+    if (column === 0) paper.need(CHART_HEIGHT + 6);
+    const x = paper.left + column * (width + CHART_GAP);
+    paper.tagged(section, 'Figure', () => paintDistribution(paper, chart, x, paper.y, width), {
+      alt: chart.alt,
+    });
+    if (column === PER_ROW - 1 || i === charts.length - 1) paper.y += CHART_HEIGHT + 6;
+  });
+  if (more > 0) paper.paragraph(section, `… and ${more} more, in the table.`, SMALL);
+}
+
+/** Numbers of windows, those with the fewest standard deviations of room first. */
+function byRoom(outputs: readonly SpreadOutput[]): readonly SpreadOutput[] {
+  const room = ({ min, max, nominal, sd }: SpreadOutput): number =>
+    Math.min(
+      min === null ? Number.POSITIVE_INFINITY : (nominal - min) / sd,
+      max === null ? Number.POSITIVE_INFINITY : (max - nominal) / sd,
+    );
+  return outputs
+    .map((output, i) => ({ output, i, room: room(output) }))
+    .filter(({ output, room: left }) => output.hasWindow && output.sd > 0 && !Number.isNaN(left))
+    .sort((a, b) => (a.room < b.room ? -1 : a.room > b.room ? 1 : a.i - b.i))
+    .map(({ output }) => output);
+}
+
+function paintDistribution(
+  paper: Paper,
+  chart: DistributionChart,
+  x: number,
+  y: number,
+  width: number,
+): void {
+  const { doc } = paper;
+  const top = y + 22;
+  const bottom = y + CHART_HEIGHT - 16;
+  const [left, right] = [x + 4, x + width - 4];
+  const toX = (value: number): number =>
+    left + ((value - chart.low) / (chart.high - chart.low)) * (right - left);
+  const toY = (height: number): number => bottom - height * (bottom - top) * 0.94;
+  paper.put(paper.clip(chart.title, width, TITLE), x, y, TITLE);
+  paper.put(paper.clip(chart.subtitle, width, LABEL), x, y + 10, LABEL);
+  doc.save();
+  doc.rect(left, top, right - left, bottom - top).clip();
+  const { min, max } = chart.window;
+  const from = min === null ? left : Math.max(left, toX(min));
+  const to = max === null ? right : Math.min(right, toX(max));
+  if (to > from) doc.rect(from, top, to - from, bottom - top).fill(BAND);
+  const bar = (right - left) / chart.bars.length;
+  chart.bars.forEach((height, i) => {
+    if (height > 0) doc.rect(left + i * bar, toY(height), bar * 0.92, bottom - toY(height));
+  });
+  doc.fillOpacity(0.75).fill(BAR).fillOpacity(1);
+  chart.curve.forEach((height, i) => {
+    const at = left + ((right - left) * i) / (chart.curve.length - 1);
+    if (i === 0) doc.moveTo(at, toY(height));
+    else doc.lineTo(at, toY(height));
+  });
+  if (chart.curve.length > 0) doc.lineWidth(0.9).lineJoin('round').strokeColor(CURVE).stroke();
+  for (const end of [min, max]) {
+    if (end === null) continue;
+    doc.moveTo(toX(end), top).lineTo(toX(end), bottom).lineWidth(0.8).strokeColor(BAND_EDGE).stroke();
+  }
+  doc.moveTo(toX(chart.nominal), top).lineTo(toX(chart.nominal), bottom).dash(2, { space: 2 });
+  doc.lineWidth(0.7).strokeColor(INK).stroke().undash();
+  doc.restore();
+  doc
+    .rect(left, top, right - left, bottom - top)
+    .lineWidth(0.4)
+    .strokeColor(INK)
+    .stroke();
+  paintAxis(paper, chart, toX, bottom, right);
+}
+
+function paintAxis(
+  paper: Paper,
+  { ticks, unit }: DistributionChart,
+  toX: (value: number) => number,
+  bottom: number,
+  right: number,
+): void {
+  const { doc } = paper;
+  const unitLeft = right - paper.widthOf(unit, LABEL);
+  for (const { at, text } of ticks) {
+    doc
+      .moveTo(toX(at), bottom)
+      .lineTo(toX(at), bottom + 2)
+      .lineWidth(0.4)
+      .strokeColor(INK)
+      .stroke();
+    const textWidth = paper.widthOf(text, LABEL);
+    const textLeft = toX(at) - textWidth / 2;
+    // the unit stands at the end of the axis
+    if (textLeft + textWidth < unitLeft - 3) paper.put(text, textLeft, bottom + 3, LABEL);
+  }
+  paper.put(unit, unitLeft, bottom + 3, LABEL);
+}
+
+/* ---------- numbers ---------- */
+
+function writeNumbers(paper: Paper, section: Element, spread: Spread, show: Show): void {
+  paper.heading(section, 2, 'Numbers');
+  const rows: TableRow[] = [];
+  let group = '';
+  for (const output of spread.outputs.slice(0, MOST_ROWS)) {
+    if (output.on !== group) {
+      rows.push({ kind: 'group', text: GROUPS[output.on] });
+      group = output.on;
+    }
+    const { what, quantity, unit, nominal, mean, sd, linearSd, low, high, asked, kept, causes, notLinear } =
+      spreadCells(output, spread, show);
+    rows.push(
+      cells(what, quantity, unit, nominal, mean, low, high, sd, linearSd, notLinear, asked, kept, causes),
+    );
+  }
+  drawTable(
+    paper,
+    section,
+    [
+      { head: 'what', align: 'left', width: 'share' },
+      { head: 'quantity', align: 'left', width: 'fit' },
+      { head: 'unit', align: 'left', width: 'fit' },
+      { head: 'nominal', align: 'right', width: 'fit' },
+      { head: 'mean', align: 'right', width: 'fit' },
+      { head: '2.5 %', align: 'right', width: 'fit' },
+      { head: '97.5 %', align: 'right', width: 'fit' },
+      { head: 'sd', align: 'right', width: 'fit' },
+      { head: 'sd,', unit: 'first order', align: 'right', width: 'fit' },
+      { head: 'linear', align: 'left', width: 'fit' },
+      { head: 'asked', align: 'left', width: 'fit' },
+      { head: 'kept', align: 'right', width: 'fit' },
+      { head: 'main causes', align: 'left', width: 'share' },
+    ],
+    rows,
+    { size: 6.5 },
+  );
+  const more = spread.outputs.length - MOST_ROWS;
+  if (more > 0) paper.paragraph(section, `… and ${more} more, in the CSV and JSON files.`, SMALL);
+}
+
+const GROUPS: Readonly<Record<SpreadOutput['on'], string>> = {
+  port: 'Ports (flow into the chip is positive)',
+  reach: 'Reaches (flow in the direction of the nominal flow)',
+  channel: 'Channels passed through several reaches',
+  node: 'Nodes',
+};

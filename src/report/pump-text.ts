@@ -1,0 +1,51 @@
+import { cleanText, wrapText } from './plain-text.ts';
+import { rangeText, settingCells, targetCells } from './pump-rows.ts';
+import type { Report, ReportedCase } from './report.ts';
+import { textTable } from './text-table.ts';
+
+/** What the command pump adds to the summary of a check: each target with what is reached, and each port's settings. Ends with a line end. */
+export function pumpText(report: Report, columns: number): string {
+  const width = Math.max(40, Math.min(100, columns));
+  return report.cases
+    .filter(({ pump }) => pump !== undefined)
+    .map((one) => `${caseLines(one, width).join('\n')}\n\n`)
+    .join('');
+}
+
+function caseLines({ name, network, pump, show }: ReportedCase, width: number): readonly string[] {
+  const targets = pump?.targets ?? [];
+  const ranges = targets.flatMap((target) => rangeText(network, target, show) ?? []);
+  return [
+    name === null ? 'pump settings' : `pump settings, case ${cleanText(name)}`,
+    ...textTable(
+      [
+        { head: 'target', align: 'left' },
+        { head: 'quantity', align: 'left' },
+        { head: 'wanted', align: 'right' },
+        { head: 'reached', align: 'right' },
+        { head: 'by', align: 'left' },
+      ],
+      targets.map((target) => {
+        const { on, quantity, wanted, reached, by } = targetCells(target, show);
+        return [cleanText(on), quantity, wanted, reached, cleanText(by)];
+      }),
+      width,
+    ),
+    '',
+    ...textTable(
+      [
+        { head: 'set', align: 'left' },
+        { head: 'pressure to hold', align: 'right' },
+        { head: 'or flow to give', align: 'right' },
+        { head: 'in the chip', align: 'right' },
+        { head: 'pump limits', align: 'left' },
+      ],
+      targets.map((target) => {
+        const { port, pressure, flow, inChip, limits } = settingCells(network, target, show);
+        return [cleanText(port), pressure, flow, inChip, limits];
+      }),
+      width,
+    ),
+    ...ranges.flatMap((text) => wrapText(cleanText(text), width)),
+  ];
+}

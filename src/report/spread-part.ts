@@ -1,0 +1,69 @@
+import type { Spread } from '../spread/types.ts';
+import type { SpreadPart } from './result-schema.ts';
+
+/** The spread as it stands in the result document. */
+export function spreadPartOf(spread: Spread): SpreadPart {
+  const { causes, corner, outputs, draws } = spread;
+  return {
+    draws,
+    draws_asked: spread.asked,
+    draws_outside_model: spread.outside,
+    seed: spread.seed,
+    outputs: outputs.map((output) => ({
+      on: output.on,
+      name: output.name,
+      quantity: output.quantity,
+      unit: output.unit,
+      nominal: known(output.nominal),
+      mean: known(output.mean),
+      sd: known(output.sd),
+      p2_5: known(output.p2_5),
+      p97_5: known(output.p97_5),
+      linear_sd: known(output.linearSd),
+      linear: output.isLinear,
+      kept: keptShare(output, spread),
+      shares: namedShares(output.shares, spread),
+    })),
+    outputs_left_out: spread.leftOut,
+    yield: spread.yield?.share ?? null,
+    yield_low: spread.yield?.low ?? null,
+    yield_high: spread.yield?.high ?? null,
+    not_judged: [...spread.unknownWindows, ...spread.unknownLimits],
+    worst_corner:
+      corner === null
+        ? null
+        : {
+            on: outputs[corner.output].on,
+            name: outputs[corner.output].name,
+            quantity: outputs[corner.output].quantity,
+            unit: outputs[corner.output].unit,
+            limit: corner.limit,
+            room_sd: corner.room,
+            value: known(corner.value),
+            kept: corner.isKept,
+            at: Object.fromEntries(causes.map(({ key }, cause) => [key, END[corner.signs[cause] + 1]])),
+          },
+  };
+}
+
+const END = ['lower', 'each its own', 'upper'] as const;
+
+/** Share of the draws that keep what is asked of one number; null where nothing is asked, or without draws. Draws outside the model do not keep it. */
+export function keptShare(
+  { min, max, failures }: Pick<Spread['outputs'][number], 'min' | 'max' | 'failures'>,
+  { draws, outside }: Pick<Spread, 'draws' | 'outside'>,
+): number | null {
+  if ((min === null && max === null) || draws === 0) return null;
+  return (draws - outside - failures) / draws;
+}
+
+function namedShares(shares: Float64Array | null, { causes }: Spread): Record<string, number> {
+  if (shares === null) return {};
+  return Object.fromEntries(causes.map(({ key }, cause) => [key, shares[cause]]));
+}
+
+/** null for what does not exist, and no −0. */
+function known(value: number): number | null {
+  if (!Number.isFinite(value)) return null;
+  return value === 0 ? 0 : value;
+}

@@ -1,0 +1,297 @@
+import { InputError } from '../errors.ts';
+import type { Network } from '../network/types.ts';
+import { ductForm } from '../physics/duct.ts';
+import { nearest } from '../runsheet/nearest.ts';
+import { quote } from '../runsheet/quote.ts';
+import type { RunSheet, TargetEntry } from '../runsheet/types.ts';
+import type { FlowState } from './types.ts';
+
+/** What is looked at in a flow state. All three are linear in every port's setting. */
+export type Observed =
+  /** Flow of a reach, from → to. */
+  | { readonly kind: 'reach'; readonly reach: number }
+  /** Flow of a port into the chip. */
+  | { readonly kind: 'port'; readonly port: number }
+  | { readonly kind: 'node'; readonly node: number };
+
+/** How a target's value follows from what is observed, x. */
+export type Measure =
+  /** The value is x, with its sign: flow and pressure. */
+  | { readonly kind: 'signed' }
+  /** factor · |x|: wall shear and mean velocity say how much flows, not which way. */
+  | { readonly kind: 'size'; readonly factor: number }
+  /** V/|x|, the mean residence time. */
+  | { readonly kind: 'time'; readonly volumeM3: number };
+
+/** A target of the run sheet, found in the network. */
+export interface Wanted {
+  /** Place in the run sheet's list. */
+  readonly index: number;
+  readonly entry: TargetEntry;
+  readonly observed: Observed;
+  readonly measure: Measure;
+  /** The port whose setting is to be found, as an index into chip.ports. */
+  readonly port: number;
+  /** A port driven by flow keeps that kind; any other one is taken for a pressure to be found. */
+  readonly drive: 'pressure' | 'flow';
+  /** Shown name of what the target is on: the reach, port or node. */
+  readonly name: string;
+}
+
+/** Ends included; infinite where open. */
+export interface Interval {
+  readonly low: number;
+  readonly high: number;
+}
+
+/**
+ * The targets of the run sheet in terms of the network, in the order written.
+ * @throws InputError at the target's line for a name that the network lacks, a channel of several reaches without `reach:`, several targets by one port,
+ * a reach whose width or depth is unknown, a negative velocity, a window that any setting keeps
+ */
+export function readTargets(network: Network): readonly Wanted[] {
+  const { sheet } = network.chip;
+  if (sheet === null) return [];
+  refuseSharedPorts(sheet);
+  return sheet.targets.map((entry, index): Wanted => {
+    const port = network.chip.ports.findIndex(({ drawnName }) => drawnName === entry.by);
+    if (port < 0) refuseTarget(sheet, index, `by: the drawing has no port ${quote(entry.by)}`);
+    const observed = observedOf(network, sheet, entry, index);
+    const measure = measureOf(network, sheet, entry, index, observed);
+    refuseValue(sheet, entry, index, measure);
+    const drive = network.chip.ports[port].condition.kind === 'flow' ? 'flow' : 'pressure';
+    return { index, entry, observed, measure, port, drive, name: nameOf(network, observed) };
+  });
+}
+
+/** Stops at a target, with its line: `culture.run.yaml:31: targets[0]: …`. */
+export function refuseTarget(sheet: RunSheet, index: number, what: string): never {
+  throw new InputError(`${sheet.file}:${sheet.targets[index].line}`, `targets[${index}]: ${what}`);
+}
+
+/** NaN where it can't be known. */
+export function observe(state: FlowState, observed: Observed): number {
+  switch (observed.kind) {
+    case 'reach':
+      return state.reachFlow[observed.reach];
+    case 'port':
+      return state.portFlow[observed.port];
+    case 'node':
+      return state.nodePressure[observed.node];
+    default:
+      return observed satisfies never;
+  }
+}
+
+/** The target's value for what is observed. A time is infinite at rest. */
+export function targetValue(measure: Measure, x: number): number {
+  switch (measure.kind) {
+    case 'signed':
+      return x;
+    case 'size':
+      return measure.factor * Math.abs(x);
+    case 'time':
+      return measure.volumeM3 / Math.abs(x);
+    default:
+      return measure satisfies never;
+  }
+}
+
+/** What must be observed for one value: with its sign for `signed`, else the size. */
+export function observedFor(measure: Measure, value: number): number {
+  switch (measure.kind) {
+    case 'signed':
+      return value;
+    case 'size':
+      return value / measure.factor;
+    case 'time':
+      return measure.volumeM3 / value;
+    default:
+      return measure satisfies never;
+  }
+}
+
+/** What may be observed while a value lies in a window: with its sign for `signed`, else the size. */
+export function observedWithin(
+  measure: Measure,
+  { min, max }: { readonly min: number | null; readonly max: number | null },
+): Interval {
+  if (measure.kind === 'time') {
+    return {
+      low: max === null ? 0 : observedFor(measure, max),
+      high: min === null || min === 0 ? Infinity : observedFor(measure, min),
+    };
+  }
+  const least = measure.kind === 'signed' ? -Infinity : 0;
+  return {
+    low: min === null ? least : observedFor(measure, min),
+    high: max === null ? Infinity : observedFor(measure, max),
+  };
+}
+
+/** "targets[0] (wall_shear of lane-1 by feed)" */
+export function targetText({ index, entry, name }: Pick<Wanted, 'index' | 'entry' | 'name'>): string {
+  return `targets[${index}] (${entry.quantity} of ${quote(name)} by ${quote(entry.by)})`;
+}
+
+function refuseSharedPorts(sheet: RunSheet): void {
+  const first = new Map<string, number>();
+  for (const [index, { by }] of sheet.targets.entries()) {
+    const before = first.get(by);
+    if (before !== undefined) {
+      refuseTarget(
+        sheet,
+        index,
+        `is by ${quote(by)}, as targets[${before}] is: one port can be set to meet one target; name another port, or leave one of them out`,
+      );
+    }
+    first.set(by, index);
+  }
+}
+
+function observedOf(network: Network, sheet: RunSheet, entry: TargetEntry, index: number): Observed {
+  switch (entry.on) {
+    case 'channel':
+      return { kind: 'reach', reach: reachOf(network, sheet, entry, index) };
+    case 'port': {
+      const port = network.chip.ports.findIndex(({ drawnName }) => drawnName === entry.name);
+      if (port < 0) refuseTarget(sheet, index, `port: the drawing has no port ${quote(entry.name)}`);
+      if (entry.quantity === 'pressure') return { kind: 'node', node: network.portNode[port] };
+      return { kind: 'port', port };
+    }
+    case 'node':
+      return { kind: 'node', node: nodeOf(network, sheet, entry.name, index) };
+    default:
+      return entry.on satisfies never;
+  }
+}
+
+const MOST_LISTED = 12;
+
+function reachOf(network: Network, sheet: RunSheet, { name, reach }: TargetEntry, index: number): number {
+  const { channels } = network.chip;
+  const reaches: number[] = [];
+  for (let r = 0; r < network.reachCount; r++)
+    if (channels[network.reachChannel[r]].drawnName === name) reaches.push(r);
+  if (reaches.length === 0) {
+    refuseTarget(
+      sheet,
+      index,
+      `channel: ${quote(name)} has no reach that resists flow: all of it lies in wells or joints, or was left out`,
+    );
+  }
+  const names = reaches.map(network.reachName);
+  if (reach === null) {
+    if (reaches.length === 1) return reaches[0];
+    refuseTarget(
+      sheet,
+      index,
+      `channel ${quote(name)} has ${reaches.length} reaches; add reach: and one of ${listed(names)}`,
+    );
+  }
+  const found = names.indexOf(reach);
+  if (found >= 0) return reaches[found];
+  const near = nearest(reach, names);
+  return refuseTarget(
+    sheet,
+    index,
+    `reach: channel ${quote(name)} has no reach ${quote(reach)}; ${near === null ? `it has ${listed(names)}` : `did you mean ${quote(near)}?`}`,
+  );
+}
+
+function nodeOf(network: Network, sheet: RunSheet, name: string, index: number): number {
+  const port = network.chip.ports.findIndex(({ drawnName }) => drawnName === name);
+  if (port >= 0) return network.portNode[port];
+  const names: string[] = [];
+  for (let node = 0; node < network.nodeCount; node++) {
+    const nodeName = network.nodeName(node);
+    if (nodeName === name) return node;
+    names.push(nodeName);
+  }
+  const near = nearest(name, names);
+  return refuseTarget(
+    sheet,
+    index,
+    `node: the network has no node ${quote(name)}; ${near === null ? `it has ${listed(names)}` : `did you mean ${quote(near)}?`} (the maps of the report show them)`,
+  );
+}
+
+function measureOf(
+  network: Network,
+  sheet: RunSheet,
+  { quantity, at }: TargetEntry,
+  index: number,
+  observed: Observed,
+): Measure {
+  if (observed.kind !== 'reach' || quantity === 'flow' || quantity === 'pressure') return { kind: 'signed' };
+  const { chip } = network;
+  const { ductWidthMm, depthMm, name } = chip.channels[network.reachChannel[observed.reach]];
+  if (!(ductWidthMm > 0 && depthMm > 0)) {
+    refuseTarget(
+      sheet,
+      index,
+      `the depth of channel ${quote(name)} is not known, so nothing in it can be computed; give its layer a depth`,
+    );
+  }
+  const form = ductForm(ductWidthMm / 1000, depthMm / 1000);
+  switch (quantity) {
+    case 'wall_shear': {
+      // τ = (τ/G) G with G = µ (R/µL) Q
+      const perGradient = at === 'mean' ? form.floorMean : form.floorPeak;
+      return { kind: 'size', factor: perGradient * chip.fluid.viscosityPaS * form.resistance };
+    }
+    case 'velocity':
+      return { kind: 'size', factor: 1 / form.areaM2 };
+    case 'residence_time': {
+      // what a joint adds is resistance, not room
+      const roomM = (network.reachDuctMm[observed.reach] - network.reachJointMm[observed.reach]) / 1000;
+      return { kind: 'time', volumeM3: form.areaM2 * roomM };
+    }
+    default:
+      return quantity satisfies never;
+  }
+}
+
+function refuseValue(
+  sheet: RunSheet,
+  { quantity, value }: TargetEntry,
+  index: number,
+  measure: Measure,
+): void {
+  const least = typeof value === 'number' ? value : (value.min ?? value.max ?? 0);
+  if (measure.kind !== 'signed' && least < 0) {
+    refuseTarget(
+      sheet,
+      index,
+      `${quantity}: is below 0; it says how fast, not which way: leave the sign out, or ask for a flow, which has one`,
+    );
+  }
+  if (typeof value === 'number') return;
+  const { low, high } = observedWithin(measure, value);
+  if (high === Infinity && (low === -Infinity || (measure.kind !== 'signed' && low === 0))) {
+    refuseTarget(
+      sheet,
+      index,
+      `${quantity}: the window is kept by any setting; give it a max, or a min above 0`,
+    );
+  }
+}
+
+function nameOf(network: Network, observed: Observed): string {
+  switch (observed.kind) {
+    case 'reach':
+      return network.reachName(observed.reach);
+    case 'port':
+      return network.chip.ports[observed.port].name;
+    case 'node':
+      return network.nodeName(observed.node);
+    default:
+      return observed satisfies never;
+  }
+}
+
+function listed(names: readonly string[]): string {
+  const more = names.length - MOST_LISTED;
+  const first = names.slice(0, MOST_LISTED).map((name) => quote(name));
+  return more > 0 ? `${first.join(', ')} and ${more} more` : first.join(', ');
+}

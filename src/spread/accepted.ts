@@ -1,0 +1,34 @@
+import type { Chip } from '../chip/types.ts';
+import { UNACCEPTABLE_RULES } from '../runsheet/measures.ts';
+
+/** What must be kept; null where nothing is asked. */
+export interface KeptLimits {
+  readonly min: number | null;
+  readonly max: number | null;
+}
+
+/**
+ * Limits of a rule at these names, moved out as far as the run sheet's `accept` takes it on; an entry without `up_to` lifts them.
+ * So a chip whose verdict is ready is judged by the same limits in every draw.
+ * @param unit SI unit of the limits, as findings write it
+ */
+export function acceptedLimits(
+  { accept }: Pick<Chip, 'accept'>,
+  rule: string,
+  names: readonly string[],
+  unit: string,
+  min: number | null,
+  max: number | null,
+): KeptLimits {
+  let [low, high] = [min, max];
+  if (UNACCEPTABLE_RULES.has(rule)) return { min: low, max: high };
+  for (const entry of accept) {
+    if (entry.rule !== rule || !names.includes(entry.at)) continue;
+    if (entry.upTo === null) return { min: null, max: null };
+    if (entry.upToUnit !== undefined && entry.upToUnit !== unit) continue;
+    // the value lies below a least or above a most; one entry can move only the side it lies beyond
+    if (low !== null && entry.upTo < low) low = entry.upTo;
+    else if (high !== null && entry.upTo > high) high = entry.upTo;
+  }
+  return { min: low, max: high };
+}

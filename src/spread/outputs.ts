@@ -1,0 +1,474 @@
+import type { Chip } from '../chip/types.ts';
+import { InputError } from '../errors.ts';
+import { NEAR_VACUUM_PA } from '../findings/pressure.ts';
+import { isAbove, isBelow } from '../findings/rule.ts';
+import type { Network } from '../network/types.ts';
+import { floorShareInside, gradientOf, type ShearRange, sideShareInside } from '../physics/duct.ts';
+import { nearest } from '../runsheet/nearest.ts';
+import { quote } from '../runsheet/quote.ts';
+import type { ChannelEntry, PumpLimitEntry, ShearWindow, TargetEntry } from '../runsheet/types.ts';
+import type { FlowState } from '../solve/types.ts';
+import { acceptedLimits, type KeptLimits } from './accepted.ts';
+import type { ChipState, SpreadModel } from './model.ts';
+import { channelReaches, passagesOf } from './passages.ts';
+
+export type Wall = 'floor' | 'side';
+
+/** What a number is computed from. Flows of reaches count in the direction of the nominal flow. */
+export type Subject =
+  | { readonly kind: 'port flow'; readonly port: number }
+  /** In the chip at the port, or at the far end of its tubing. */
+  | { readonly kind: 'port pressure'; readonly port: number; readonly at: 'chip' | 'supply' }
+  | { readonly kind: 'node pressure'; readonly node: number }
+  | { readonly kind: 'reach flow'; readonly reach: number; readonly sign: 1 | -1 }
+  | { readonly kind: 'shear'; readonly reach: number; readonly wall: Wall; readonly at: 'mean' | 'peak' }
+  | { readonly kind: 'velocity'; readonly reach: number }
+  /** Through reaches that fluid passes one after the other: volume over flow, or on the axis. */
+  | { readonly kind: 'time'; readonly reaches: readonly number[]; readonly at: 'mean' | 'fastest' }
+  | {
+      readonly kind: 'share inside';
+      readonly reach: number;
+      readonly wall: Wall;
+      readonly range: ShearRange;
+    };
+
+export type OutputQuantity =
+  | 'flow'
+  | 'pressure'
+  | 'supply_pressure'
+  | 'wall_shear_floor_mean'
+  | 'wall_shear_floor_peak'
+  | 'wall_shear_side_mean'
+  | 'wall_shear_side_peak'
+  | 'floor_share_inside_window'
+  | 'side_share_inside_window'
+  | 'velocity'
+  | 'residence_time'
+  | 'fastest_time';
+
+export interface Output {
+  readonly on: 'port' | 'reach' | 'channel' | 'node';
+  /** Of the port, reach, channel (a time through several of its reaches) or node. */
+  readonly name: string;
+  readonly quantity: OutputQuantity;
+  readonly unit: 'm³/s' | 'Pa' | 'm/s' | 's' | '';
+  /** What a window or a limit asks of this number. */
+  readonly min: number | null;
+  readonly max: number | null;
+  /** Whether the limits are those of a channel's window. */
+  readonly hasWindow: boolean;
+  readonly isTarget: boolean;
+  readonly subject: Subject;
+}
+
+/**
+ * What is followed: flow and pressure of every port, everything about every channel with a window, every target; each once.
+ * @throws InputError for a target at a node that the network lacks
+ */
+export function listOutputs(network: Network, nominal: FlowState): readonly Output[] {
+  const outputs = new Map<string, Output>();
+  const add = (output: Output): void => {
+    const key = `${output.on} ${output.quantity} ${JSON.stringify(output.subject)}`;
+    const known = outputs.get(key);
+    if (known === undefined) outputs.set(key, output);
+    else if (output.isTarget) outputs.set(key, { ...known, isTarget: true });
+  };
+  for (const output of portOutputs(network)) add(output);
+  for (const output of targetOutputs(network, nominal)) add(output);
+  network.chip.channels.forEach(({ settings }, channel) => {
+    if (settings !== null)
+      for (const output of windowOutputs(network, nominal, channel, settings)) add(output);
+  });
+  return [...outputs.values()];
+}
+
+/** Nodes of the network whose pressure is an output. */
+export function pressureNodesOf(network: Network): readonly number[] {
+  const { targets } = network.chip.sheet ?? { targets: [] };
+  return [
+    ...network.portNode,
+    ...targets.flatMap((target) => (target.on === 'node' ? [nodeOf(network, target)] : [])),
+  ];
+}
+
+/** NaN where the number does not exist. */
+export function outputValue({ subject }: Output, model: SpreadModel, state: ChipState): number {
+  const { network } = model;
+  switch (subject.kind) {
+    case 'port flow':
+      return portFlow(subject.port, model, state);
+    case 'port pressure': {
+      const node = subject.at === 'chip' ? network.portNode : model.factor.prepared.driveNode;
+      return known(model.nominal.portPressure[subject.port], state.flow.pressureHi[node[subject.port]]);
+    }
+    case 'node pressure':
+      return known(model.nominal.nodePressure[subject.node], state.flow.pressureHi[subject.node]);
+    case 'reach flow':
+      return known(model.nominal.reachFlow[subject.reach], subject.sign * state.flow.flow[subject.reach]);
+    case 'shear': {
+      const section = flowingIn(subject.reach, model, state);
+      if (section === null) return Number.NaN;
+      const { form, gradient } = section;
+      if (subject.wall === 'floor')
+        return gradient * (subject.at === 'mean' ? form.floorMean : form.floorPeak);
+      return gradient * (subject.at === 'mean' ? form.sideMean : form.sidePeak);
+    }
+    case 'velocity': {
+      const section = flowingIn(subject.reach, model, state);
+      return section === null ? Number.NaN : section.flow / section.form.areaM2;
+    }
+    case 'time': {
+      let seconds = 0;
+      for (const reach of subject.reaches) seconds += secondsIn(reach, subject.at, model, state);
+      return Number.isFinite(seconds) ? seconds : Number.NaN;
+    }
+    case 'share inside': {
+      const section = flowingIn(subject.reach, model, state);
+      return section === null ? Number.NaN : shareInside(section, subject.wall, subject.range);
+    }
+    default:
+      return subject satisfies never;
+  }
+}
+
+/** Flow into the chip at a port: found where it holds a pressure, given elsewhere; NaN where two ports hold one node. */
+export function portFlow(port: number, { drives, factor, nominal }: SpreadModel, state: ChipState): number {
+  if (Number.isNaN(nominal.portFlow[port])) return Number.NaN;
+  if (drives[port].kind !== 'pressure') return state.givenFlow[port];
+  const node = factor.prepared.driveNode[port];
+  return state.flow.inflow[node] - state.injection[node];
+}
+
+export interface Flowing {
+  readonly form: NonNullable<ChipState['form'][number]>;
+  /** Magnitudes. */
+  readonly flow: number;
+  readonly gradient: number;
+}
+
+/** What flows in a reach; null where it is not known. */
+export function flowingIn(
+  reach: number,
+  { network, nominal }: SpreadModel,
+  state: ChipState,
+): Flowing | null {
+  const form = state.form[network.reachChannel[reach]];
+  if (form === null || Number.isNaN(nominal.reachFlow[reach])) return null;
+  const flow = Math.abs(state.flow.flow[reach]);
+  return { form, flow, gradient: gradientOf(form, state.viscosityPaS, flow) };
+}
+
+export function shareInside({ form, gradient }: Flowing, wall: Wall, range: ShearRange): number {
+  return wall === 'floor' ? floorShareInside(form, gradient, range) : sideShareInside(form, gradient, range);
+}
+
+/** Infinite without flow, NaN where nothing is known. */
+export function secondsIn(
+  reach: number,
+  at: 'mean' | 'fastest',
+  model: SpreadModel,
+  state: ChipState,
+): number {
+  const section = flowingIn(reach, model, state);
+  if (section === null) return Number.NaN;
+  const { form, flow } = section;
+  const volume = form.areaM2 * roomM(model.network, reach);
+  return volume / flow / (at === 'mean' ? 1 : form.peakOverMean);
+}
+
+/** Length with room for fluid (m): what joints add is resistance only. */
+function roomM({ reachDuctMm, reachJointMm }: Network, reach: number): number {
+  return (reachDuctMm[reach] - reachJointMm[reach]) / 1000;
+}
+
+/** A number that the chip as drawn does not have has no spread either. */
+function known(nominal: number, value: number): number {
+  return Number.isNaN(nominal) ? Number.NaN : value;
+}
+
+/* ---------- ports ---------- */
+
+const PLAIN = { min: null, max: null, hasWindow: false, isTarget: false } as const;
+
+function portOutputs({ chip }: Network): Output[] {
+  return chip.ports.flatMap(({ name, drawnName, condition, tubing }, port): Output[] => {
+    const pump = drawnName === null ? undefined : chip.sheet?.pumpLimits[drawnName];
+    const isShut = condition.kind === 'sealed' || condition.kind === 'unset';
+    const hasSupply = tubing.length > 0 && !isShut;
+    const pressure = (at: 'chip' | 'supply'): Output => {
+      const atPump = at === 'supply' || !hasSupply ? pump : undefined;
+      return {
+        ...PLAIN,
+        ...pressureLimits(chip, name, atPump),
+        on: 'port',
+        name,
+        quantity: at === 'chip' ? 'pressure' : 'supply_pressure',
+        unit: 'Pa',
+        subject: { kind: 'port pressure', port, at },
+      };
+    };
+    const mostFlow = acceptedLimits(chip, 'pump-limit', [name], 'm³/s', null, pump?.maxFlowM3s ?? null).max;
+    const flow: Output = {
+      ...PLAIN,
+      on: 'port',
+      name,
+      quantity: 'flow',
+      unit: 'm³/s',
+      min: mostFlow === null ? null : -mostFlow,
+      max: mostFlow,
+      subject: { kind: 'port flow', port },
+    };
+    return [...(isShut ? [] : [flow]), pressure('chip'), ...(hasSupply ? [pressure('supply')] : [])];
+  });
+}
+
+/** What the chip holds, and at the end where the pump is what the pump does. */
+function pressureLimits(chip: Chip, port: string, pump: PumpLimitEntry | undefined): KeptLimits {
+  const { maxPressurePa, minPressurePa } = chip.limits;
+  const least = Math.max(minPressurePa?.value ?? NEAR_VACUUM_PA, NEAR_VACUUM_PA);
+  const low = acceptedLimits(chip, 'under-pressure', [port], 'Pa', least, null).min;
+  const high = acceptedLimits(chip, 'over-pressure', [port], 'Pa', null, maxPressurePa?.value ?? null).max;
+  const [pumpLow, pumpHigh] = [pump?.minPressurePa ?? null, pump?.maxPressurePa ?? null];
+  const atPump = acceptedLimits(chip, 'pump-limit', [port], 'Pa', pumpLow, pumpHigh);
+  return { min: tighter(low, atPump.min, Math.max), max: tighter(high, atPump.max, Math.min) };
+}
+
+function tighter(
+  a: number | null,
+  b: number | null,
+  choose: (a: number, b: number) => number,
+): number | null {
+  return a === null ? b : b === null ? a : choose(a, b);
+}
+
+/* ---------- channels with a window ---------- */
+
+function windowOutputs(
+  network: Network,
+  nominal: FlowState,
+  channel: number,
+  settings: ChannelEntry,
+): Output[] {
+  const { wallShear, residenceTime, flow, walls } = settings;
+  if (wallShear === null && residenceTime === null && flow === null) return [];
+  const { chip } = network;
+  const reaches = [...channelReaches(network, channel)];
+  const { name: channelName } = chip.channels[channel];
+  const outputs: Output[] = [];
+  for (const reach of reaches) {
+    const names = [network.reachName(reach), channelName];
+    const flowLimits = acceptedLimits(
+      chip,
+      'flow-window',
+      names,
+      'm³/s',
+      flow?.min ?? null,
+      flow?.max ?? null,
+    );
+    outputs.push({
+      ...reachFlowOutput(network, nominal, reach),
+      ...flowLimits,
+      hasWindow: flow !== null,
+    });
+    for (const wall of walls === 'all' ? (['floor', 'side'] as const) : (['floor'] as const))
+      outputs.push(...shearOutputs(network, reach, wall, wallShear, names));
+  }
+  for (const passage of passagesOf(network, reaches, nominal.reachFlow)) {
+    const names = [...passage.map(network.reachName), channelName];
+    const limits = acceptedLimits(
+      chip,
+      'residence-window',
+      names,
+      's',
+      residenceTime?.min ?? null,
+      residenceTime?.max ?? null,
+    );
+    const hasWindow = residenceTime !== null;
+    outputs.push({ ...timeOutput(network, passage, 'mean'), max: limits.max, hasWindow });
+    if (limits.min !== null)
+      outputs.push({ ...timeOutput(network, passage, 'fastest'), min: limits.min, hasWindow });
+  }
+  return outputs;
+}
+
+/** Without `over` the mean must reach the least and the peak must not pass the most; with it the share between them counts. */
+function shearOutputs(
+  network: Network,
+  reach: number,
+  wall: Wall,
+  window: ShearWindow | null,
+  names: readonly string[],
+): Output[] {
+  const { chip } = network;
+  const whole = window !== null && window.over === null ? window : null;
+  const { min, max } = acceptedLimits(
+    chip,
+    'shear-window',
+    names,
+    'Pa',
+    whole?.min ?? null,
+    whole?.max ?? null,
+  );
+  const hasWindow = whole !== null;
+  const outputs: Output[] = [
+    { ...shearOutput(network, reach, wall, 'mean'), min, hasWindow: hasWindow && min !== null },
+    { ...shearOutput(network, reach, wall, 'peak'), max, hasWindow: hasWindow && max !== null },
+  ];
+  if (window !== null && window.over !== null) {
+    const range = { minPa: window.min, maxPa: window.max };
+    outputs.push({
+      ...PLAIN,
+      on: 'reach',
+      name: network.reachName(reach),
+      quantity: `${wall}_share_inside_window`,
+      unit: '',
+      min: acceptedLimits(chip, 'shear-window', names, '', window.over, null).min,
+      hasWindow: true,
+      subject: { kind: 'share inside', reach, wall, range },
+    });
+  }
+  return outputs;
+}
+
+function reachFlowOutput(network: Network, nominal: FlowState, reach: number): Output {
+  const sign = nominal.reachFlow[reach] < 0 ? -1 : 1;
+  return {
+    ...PLAIN,
+    on: 'reach',
+    name: network.reachName(reach),
+    quantity: 'flow',
+    unit: 'm³/s',
+    subject: { kind: 'reach flow', reach, sign },
+  };
+}
+
+function shearOutput(network: Network, reach: number, wall: Wall, at: 'mean' | 'peak'): Output {
+  return {
+    ...PLAIN,
+    on: 'reach',
+    name: network.reachName(reach),
+    quantity: `wall_shear_${wall}_${at}`,
+    unit: 'Pa',
+    subject: { kind: 'shear', reach, wall, at },
+  };
+}
+
+function timeOutput(network: Network, reaches: readonly number[], at: 'mean' | 'fastest'): Output {
+  const isOne = reaches.length === 1;
+  const [first] = reaches;
+  return {
+    ...PLAIN,
+    on: isOne ? 'reach' : 'channel',
+    name: isOne ? network.reachName(first) : network.chip.channels[network.reachChannel[first]].name,
+    quantity: at === 'mean' ? 'residence_time' : 'fastest_time',
+    unit: 's',
+    subject: { kind: 'time', reaches, at },
+  };
+}
+
+/* ---------- targets ---------- */
+
+function targetOutputs(network: Network, nominal: FlowState): Output[] {
+  const { chip } = network;
+  return (chip.sheet?.targets ?? []).flatMap((target): Output[] => {
+    switch (target.on) {
+      case 'port': {
+        const port = chip.ports.findIndex(({ drawnName }) => drawnName === target.name);
+        const wanted = portOutputs(network).filter(
+          ({ subject, quantity }) =>
+            'port' in subject &&
+            subject.port === port &&
+            quantity === (target.quantity === 'flow' ? 'flow' : 'pressure'),
+        );
+        return wanted.map((output) => ({ ...output, isTarget: true }));
+      }
+      case 'node': {
+        const node = nodeOf(network, target);
+        return [
+          {
+            ...PLAIN,
+            on: 'node',
+            name: target.name,
+            quantity: 'pressure',
+            unit: 'Pa',
+            isTarget: true,
+            subject: { kind: 'node pressure', node },
+          },
+        ];
+      }
+      case 'channel':
+        return targetReaches(network, target).map((reach) => ({
+          ...reachTarget(network, nominal, reach, target),
+          isTarget: true,
+        }));
+      default:
+        return target.on satisfies never;
+    }
+  });
+}
+
+function reachTarget(network: Network, nominal: FlowState, reach: number, target: TargetEntry): Output {
+  switch (target.quantity) {
+    case 'flow':
+      return reachFlowOutput(network, nominal, reach);
+    case 'wall_shear':
+      return shearOutput(network, reach, 'floor', target.at);
+    case 'residence_time':
+      return timeOutput(network, [reach], 'mean');
+    case 'velocity':
+      return {
+        ...PLAIN,
+        on: 'reach',
+        name: network.reachName(reach),
+        quantity: 'velocity',
+        unit: 'm/s',
+        subject: { kind: 'velocity', reach },
+      };
+    case 'pressure':
+      throw new RangeError('a pressure target is at a port or a node');
+    default:
+      return target.quantity satisfies never;
+  }
+}
+
+/** The reach named, else every reach of the channel. */
+function targetReaches(network: Network, target: TargetEntry): number[] {
+  const { chip } = network;
+  const reaches = chip.channels.flatMap(({ drawnName }, channel) =>
+    drawnName === target.name ? [...channelReaches(network, channel)] : [],
+  );
+  if (target.reach === null) return reaches;
+  const named = reaches.filter((reach) => network.reachName(reach) === target.reach);
+  if (named.length === 0)
+    refuseTarget(network, target, 'reach', target.reach, reaches.map(network.reachName));
+  return named;
+}
+
+function nodeOf(network: Network, target: TargetEntry): number {
+  for (let node = 0; node < network.nodeCount; node++)
+    if (network.nodeName(node) === target.name) return node;
+  const names = Array.from({ length: network.nodeCount }, (_, node) => network.nodeName(node));
+  return refuseTarget(network, target, 'node', target.name, names);
+}
+
+function refuseTarget(
+  { chip }: Network,
+  { line }: TargetEntry,
+  what: string,
+  name: string,
+  candidates: readonly string[],
+): never {
+  const near = nearest(name, candidates);
+  const hint =
+    near === null ? `its ${what}s are ${candidates.slice(0, 8).join(', ')}` : `did you mean ${quote(near)}?`;
+  throw new InputError(
+    `${chip.sheet?.file ?? chip.file}:${line}`,
+    `targets: the network has no ${what} ${quote(name)} there; ${hint}`,
+  );
+}
+
+/** Whether a value keeps what is asked of it, with the slack of the rules. A window on a flow is one on its magnitude, whatever its direction. */
+export function isKept({ min, max, subject }: Output, value: number): boolean {
+  const judged = subject.kind === 'reach flow' ? Math.abs(value) : value;
+  return !(min !== null && isBelow(judged, min)) && !(max !== null && isAbove(judged, max));
+}

@@ -1,0 +1,117 @@
+import { describe, expect, it } from 'vitest';
+import { chipOf, circle, type Draft, ignored, stroke } from './drawing.ts';
+
+const drafts: readonly Draft[] = [
+  stroke('lane-1', [0, 0, 10, 0], { groups: ['Lanes'] }),
+  stroke('lane-1', [0, 1, 10, 1], { groups: ['Lanes'] }),
+  stroke(null, [0, 2, 10, 2]),
+  circle('feed', 0, 0),
+  circle('waste', 10, 0),
+  circle(null, 20, 0),
+  circle('huge', 60, 0, 20, { filled: false }),
+  ignored('label', 'text'),
+];
+
+describe('a name that the drawing lacks', () => {
+  for (const [sheet, message] of [
+    ['ports: { fed: open }', '2: ports.fed: the drawing has no port "fed"; did you mean "feed"?'],
+    [
+      'ports: { nozzle: open }',
+      '2: ports.nozzle: the drawing has no port "nozzle"; its ports are "feed", "waste"',
+    ],
+    [
+      'ports: { huge: open }',
+      '2: ports.huge: "huge" is drawn but is no port here: its diameter of 40 mm is outside limits.port_diameter, 0.2 mm to 10 mm',
+    ],
+    [
+      'ports: { port-3: open }',
+      '2: ports.port-3: "port-3" is only shown for a shape that has no such name; give it a name in the drawing (data-name, label, title or id) and use that',
+    ],
+    [
+      'ports_layer: Lanes\nports: { feed: open }',
+      '3: ports.feed: "feed" is drawn but is no port here: it is not in the ports layer',
+    ],
+    [
+      'ignore: [feed]\nports: { feed: open }',
+      '3: ports.feed: "feed" is drawn but is no port here: the run sheet ignores it',
+    ],
+    [
+      'layers: { Lanes: ignore }\nchannels: { lane-1: {} }',
+      '3: channels.lane-1: "lane-1" is drawn but is no channel here: its layer is set to ignore',
+    ],
+    ['channels: { label: {} }', '2: channels.label: "label" is drawn but is no channel here: it is a text'],
+    [
+      'channels: { lane-9: {} }',
+      '2: channels.lane-9: the drawing has no channel "lane-9"; did you mean "lane-1"?',
+    ],
+    ['channels: { "lan-*": {} }', '2: channels.lan-*: no channel matches "lan-*"; did you mean "lane-1"?'],
+    [
+      'channels: { channel-3: {} }',
+      '2: channels.channel-3: "channel-3" is only shown for a shape that has no such name',
+    ],
+    ['channels: { lane-1-2: {} }', '2: channels.lane-1-2: "lane-1-2" is only shown'],
+    [
+      'layers: { lane: { depth: 1 um } }',
+      '2: layers.lane: the drawing has no layer "lane"; did you mean "Lanes"?',
+    ],
+    ['ports_layer: hole', '2: ports_layer: the drawing has no layer "hole"; its layers are "Lanes"'],
+    ['outline: chip', '2: outline: the drawing has no shape "chip"'],
+    ['outline: fed', '2: outline: the drawing has no shape "fed"; did you mean "feed"?'],
+    [
+      'targets:\n  - { channel: lane-2, flow: 1 uL/min, by: feed }',
+      '3: targets[0].channel: the drawing has no channel "lane-2"; did you mean "lane-1"?',
+    ],
+    [
+      'targets:\n  - { channel: lane-1, flow: 1 uL/min, by: fed }',
+      '3: targets[0].by: the drawing has no port "fed"; did you mean "feed"?',
+    ],
+    [
+      'targets: [{ port: wast, flow: 1 uL/min, by: feed }]',
+      '2: targets[0].port: the drawing has no port "wast"; did you mean "waste"?',
+    ],
+    [
+      'pump_limits: { fed: { max_flow: 1 mL/min } }',
+      '2: pump_limits.fed: the drawing has no port "fed"; did you mean "feed"?',
+    ],
+    [
+      'tolerances: { depth: { lane: 5 % } }',
+      '2: tolerances.depth.lane: the drawing has no layer "lane"; did you mean "Lanes"?',
+    ],
+    [
+      'tolerances: { pressure: { fed: 5 % } }',
+      '2: tolerances.pressure.fed: the drawing has no port "fed"; did you mean "feed"?',
+    ],
+    [
+      'tolerances: { flow: { fed: 5 % } }',
+      '2: tolerances.flow.fed: the drawing has no port "fed"; did you mean "feed"?',
+    ],
+    [
+      'accept: [{ rule: open-end, at: channel-3, because: b, by: c, on: 2026-05-04 }]',
+      '2: accept[0].at: "channel-3" is only shown',
+    ],
+    ['ports: { "a\\nb": open }', '2: ports."a\\u000ab": the drawing has no port "a\\u000ab"; its ports are'],
+  ] as const) {
+    it(`is answered with its line and the nearest right one: ${JSON.stringify(sheet)}`, () => {
+      expect(() => chipOf(drafts, `depth: 50 um\n${sheet}`)).toThrow(`c.run.yaml:${message}`);
+    });
+  }
+
+  it('may stand under ignore, and in targets on nodes, which the network names', () => {
+    const sheet =
+      'depth: 50 um\nignore: [nothing, "dim-*"]\ntargets: [{ node: junction-1, pressure: 1 kPa, by: feed }]';
+    expect(chipOf(drafts, sheet).channels.length).toBe(3);
+  });
+
+  it('of a drawing without ports is answered so', () => {
+    expect(() => chipOf([stroke('a', [0, 0, 1, 0])], 'ports: { p: open }')).toThrow(
+      'the drawing has no port "p"; it has no named ports',
+    );
+  });
+
+  it('is not found through what every object has', () => {
+    expect(() =>
+      chipOf([stroke('toString', [0, 0, 1, 0]), circle('valueOf', 0, 0)], 'depth: 1 um'),
+    ).not.toThrow();
+    expect(chipOf([circle('valueOf', 0, 0)], 'depth: 1 um').ports[0]!.condition).toEqual({ kind: 'unset' });
+  });
+});

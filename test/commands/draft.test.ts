@@ -1,0 +1,153 @@
+import { mkdtempSync, readdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+import fc from 'fast-check';
+import { afterEach, beforeEach, describe, expect, it } from 'vitest';
+import { run } from '../../src/cli.ts';
+import { parseRunSheet } from '../../src/runsheet/parse.ts';
+import { fakeIo } from './fake-io.ts';
+
+let folder: string;
+
+beforeEach(() => {
+  folder = mkdtempSync(join(tmpdir(), 'rillcheck-'));
+});
+
+afterEach(() => {
+  rmSync(folder, { recursive: true, force: true });
+});
+
+function put(name: string, text: string): void {
+  writeFileSync(join(folder, name), text);
+}
+
+function read(name: string): string {
+  return readFileSync(join(folder, name), 'utf8');
+}
+
+async function rillcheck(...args: string[]) {
+  const io = fakeIo(folder);
+  const code = await run(args, io);
+  return { code, out: io.stdout(), err: io.stderr() };
+}
+
+const DEMOS = new URL('../../layouts-demo/', import.meta.url).pathname;
+
+describe('rillcheck draft', () => {
+  it.each(readdirSync(DEMOS).filter((name) => name.endsWith('.svg')))(
+    'drafts a run sheet for %s that check answers with what is missing, and with no other blocker than without one',
+    async (name) => {
+      put(name, readFileSync(join(DEMOS, name), 'utf8'));
+      const bare = JSON.parse((await rillcheck('check', name, '--json')).out);
+      const { code, out } = await rillcheck('draft', name);
+      expect(code).toBe(0);
+      const sheetName = name.replace('.svg', '.run.yaml');
+      expect(out).toContain(`${sheetName} written`);
+      const sheet = parseRunSheet(read(sheetName), sheetName);
+      expect(Object.keys(sheet.ports).sort()).toEqual(bare.ports.map((port: { name: string }) => port.name).sort());
+      const channels = new Set(bare.reaches.map((reach: { channel: string }) => reach.channel));
+      for (const channel of channels) expect(Object.keys(sheet.channels)).toContain(channel);
+      const drafted = JSON.parse((await rillcheck('check', name, '--json')).out);
+      const blockers = (result: typeof bare): string[] => [
+        ...new Set<string>(
+          result.findings
+            .filter(({ severity }: { severity: string }) => severity === 'blocker')
+            .map(({ rule }: { rule: string }) => rule),
+        ),
+      ];
+      expect(blockers(drafted)).toEqual(blockers(bare));
+      expect(blockers(drafted)).toEqual(expect.arrayContaining(['missing-depth', 'unset-port']));
+      const unset = drafted.findings.filter(({ rule }: { rule: string }) => rule === 'unset-port');
+      expect(unset).toHaveLength(drafted.ports.length);
+      for (const { names } of unset) expect(read(sheetName)).toMatch(new RegExp(`^ {2}${names[0]}: \\{\\} # fill in`, 'm'));
+    },
+  );
+
+  it('is ready for a check once what it marks is filled in', async () => {
+    put('culture.svg', readFileSync(join(DEMOS, 'culture.svg'), 'utf8'));
+    await rillcheck('draft', 'culture.svg');
+    const filled = read('culture.run.yaml')
+      .replace(/^depth: #/m, 'depth: 120 um #')
+      .replace(/^ {2}medium: \{\}/m, '  medium: { flow: 100 uL/min }')
+      .replace(/^ {2}waste: \{\}/m, '  waste: open');
+    put('culture.run.yaml', filled);
+    const { code, err } = await rillcheck('check', 'culture.svg', '-f', 'none');
+    expect(err).toBe('');
+    expect(code).toBe(0);
+  });
+
+  it('never writes over a run sheet without --force, and then writes it anew', async () => {
+    put('culture.svg', readFileSync(join(DEMOS, 'culture.svg'), 'utf8'));
+    put('culture.run.yaml', 'depth: 50 um\n');
+    const { code, out, err } = await rillcheck('draft', 'culture.svg');
+    expect({ code, out }).toEqual({ code: 2, out: '' });
+    expect(err).toBe('rillcheck: culture.run.yaml: there is a run sheet already; it is left as it is (--force writes over it)\n');
+    expect(read('culture.run.yaml')).toBe('depth: 50 um\n');
+    expect((await rillcheck('draft', 'culture.svg', '--force')).code).toBe(0);
+    expect(read('culture.run.yaml')).toContain('fill in');
+    expect(readdirSync(folder).sort()).toEqual(['culture.run.yaml', 'culture.svg']);
+  });
+
+  it('writes elsewhere or on stdout when asked, and the same bytes each time', async () => {
+    put('culture.svg', readFileSync(join(DEMOS, 'culture.svg'), 'utf8'));
+    const { out } = await rillcheck('draft', 'culture.svg', '-r', '-');
+    await rillcheck('draft', 'culture.svg', '-r', 'first.run.yaml');
+    expect(read('first.run.yaml')).toBe(out);
+    expect(readdirSync(folder).sort()).toEqual(['culture.svg', 'first.run.yaml']);
+  });
+
+  it('says that a scale is missing where the drawing states none', async () => {
+    put('plain.svg', '<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 100 100"><path fill="none" stroke="#000" d="M10 10H90"/><circle cx="10" cy="10" r="3"/></svg>');
+    const { out } = await rillcheck('draft', 'plain.svg', '-r', '-');
+    expect(out).toMatch(/^unit: # fill in: size of one unit of the drawing/m);
+    expect(out).toMatch(/^# port-1: .* has no name/m);
+    expect(out).toContain('1 channel has no name');
+    put('plain.run.yaml', out);
+    const { out: json } = await rillcheck('check', 'plain.svg', '--json');
+    expect(JSON.parse(json).findings.map(({ rule }: { rule: string }) => rule)).toEqual(
+      expect.arrayContaining(['assumed-scale', 'missing-depth', 'unset-port']),
+    );
+  });
+
+  it('takes names for data, whatever they hold: the sheet stays valid and means the same names', async () => {
+    const name = fc.oneof(
+      fc.string({ unit: 'binary', minLength: 1, maxLength: 12 }),
+      fc.constantFrom('yes', 'null', '007', '1e3', '- a', '# b', 'a: b', '{}', '[x', '&a', '*a', '!t', '%', '@', '`', '"', "'", '|', '>', '? k', 'a\nports: open', '\u2028', '\u0085', '__proto__', 'constructor', 'a # b', '~', '=', '<<', 'lane-*', 'é', '💧', 'x'.repeat(400)),
+    );
+    await fc.assert(
+      fc.asyncProperty(fc.uniqueArray(name, { minLength: 6, maxLength: 6, selector: (text) => text.trim() }), async (names) => {
+        const clean = names.map((text) => text.replace(/[^\t\n\r\u0020-\ud7ff\ue000-\ufffd\u{10000}-\u{10ffff}]/gu, '?'));
+        const at = clean.map((text) => escapeXml(text));
+        put(
+          'names.svg',
+          `<svg xmlns="http://www.w3.org/2000/svg" width="40mm" height="20mm" viewBox="0 0 40 20"><g data-name="${at[0]}" fill="none" stroke="#000" stroke-width=".2"><path data-name="${at[1]}" d="M5 5H30"/><path data-name="${at[2]}" d="M5 10H30"/></g><circle data-name="${at[3]}" cx="5" cy="5" r=".5"/><circle data-name="${at[4]}" cx="30" cy="5" r=".5"/><circle data-name="${at[5]}" cx="5" cy="10" r=".5"/></svg>`,
+        );
+        const bare = await rillcheck('check', 'names.svg', '--json', '--detail', 'ports');
+        if (bare.code === 2) return; // two ports of one name, once trimmed
+        const { code, out } = await rillcheck('draft', 'names.svg', '-r', '-');
+        expect(code).toBe(0);
+        put('names.draft.yaml', out);
+        const drafted = await rillcheck('check', 'names.svg', '-r', 'names.draft.yaml', '--json', '--detail', 'ports');
+        expect(drafted.err).toBe('');
+        expect(drafted.code).toBe(1);
+        const known = new Set(JSON.parse(bare.out).ports.map((port: { name: string }) => port.name));
+        for (const port of Object.keys(parseRunSheet(out, 'names.draft.yaml').ports)) expect(known).toContain(port);
+        rmSync(join(folder, 'names.draft.yaml'));
+      }),
+      { seed: 11, numRuns: 150 },
+    );
+  }, 60_000);
+
+  it('stays small enough to be read again for a drawing of very many channels', async () => {
+    const lines = Array.from({ length: 20_000 }, (_, i) => `<path data-name="a-rather-long-name-of-a-channel-${i}" d="M1 ${1 + i * 0.01}h5"/>`);
+    put('many.svg', `<svg xmlns="http://www.w3.org/2000/svg" width="40mm" height="220mm" viewBox="0 0 40 220"><g fill="none" stroke="#000" stroke-width=".001">${lines.join('')}</g></svg>`);
+    const { out } = await rillcheck('draft', 'many.svg', '-r', '-');
+    expect(Buffer.byteLength(out)).toBeLessThan(1_000_000);
+    expect(out).toContain('too many to list here');
+    expect(() => parseRunSheet(out, 'many.run.yaml')).not.toThrow();
+  });
+});
+
+function escapeXml(text: string): string {
+  return text.replace(/[&<>"'\t\n\r]/g, (character) => `&#${character.charCodeAt(0)};`);
+}
