@@ -5,8 +5,11 @@ const LONGEST = 150;
 
 /** Whether a name can be written as a key: not empty, not too long, no half characters, nothing that a record can't hold. */
 export function isDraftable(name: string): boolean {
-  return name.trim() !== '' && name.length <= LONGEST && !/\p{Cs}/u.test(name) && name !== '__proto__';
+  return name.trim() !== '' && name.length <= LONGEST && !/\p{Cs}/u.test(name) && !FORBIDDEN.has(name);
 }
+
+/** Names that a run sheet refuses. */
+const FORBIDDEN: ReadonlySet<string> = new Set(['__proto__', 'constructor', 'prototype']);
 
 /** A key or text: plain where nobody could read it as anything else, else in double quotes with escapes. */
 export function keyText(name: string): string {

@@ -3,6 +3,7 @@
  * units. Whether a hole is a port and a name a layer is for the run sheet to say.
  */
 import { InputError } from '../errors.ts';
+import { PX_MM } from '../svg/lengths.ts';
 import { stretches } from '../svg/matrix.ts';
 import type { Group, Shape, SvgDrawing } from '../svg/types.ts';
 import { quoted, ValueError } from '../svg/value-error.ts';
@@ -15,7 +16,12 @@ import type { Drawn, Hole, Ignored, Layout, LayoutItem, Outline, Stroke } from '
  * @throws InputError naming the shape for a point beyond ±1e12, and for more than 2 million segments.
  */
 export function layOut(drawing: SvgDrawing, where: string): Layout {
-  const laying: Laying = { budget: { piecesLeft: MAX_PIECES }, enclosing: new Map(), zeroLength: 0 };
+  const laying: Laying = {
+    budget: { piecesLeft: MAX_PIECES },
+    enclosing: new Map(),
+    pxUnits: PX_MM / drawing.unitMm,
+    zeroLength: 0,
+  };
   const items: LayoutItem[] = [];
   for (const shape of drawing.shapes) {
     const item = toItemOrExplain(shape, laying, where);
@@ -33,6 +39,8 @@ interface Laying {
   readonly budget: PieceBudget;
   /** Shapes of one group share their chain, so it is listed once. */
   readonly enclosing: Map<readonly Group[], Enclosing>;
+  /** Drawing units in a CSS px of the page. */
+  readonly pxUnits: number;
   zeroLength: number;
 }
 
@@ -133,7 +141,7 @@ function toStroke(shape: Shape, drawn: Drawn, flat: Flattened, laying: Laying): 
   return {
     kind: 'stroke',
     ...drawn,
-    width: strokeWidth(shape),
+    width: strokeWidth(shape, laying),
     linecap: shape.style.linecap,
     centrelines: flat.subpaths.map(({ points, closed, bendRadius }) => ({ points, closed, bendRadius })),
     dataDepth: shape.dataDepth ?? enclosingOf(shape, laying).dataDepth,
@@ -142,9 +150,10 @@ function toStroke(shape: Shape, drawn: Drawn, flat: Flattened, laying: Laying): 
 }
 
 /** Scaled by the full transform; null when that is no similarity, for then the width depends on the direction. */
-function strokeWidth(shape: Shape): number | null {
+function strokeWidth(shape: Shape, { pxUnits }: Laying): number | null {
   const { strokeWidth, nonScalingStroke } = shape.style;
-  if (nonScalingStroke) return strokeWidth;
+  // SVG 2, 8.13: such a stroke is as wide as on the page, whatever the transforms and the viewBox.
+  if (nonScalingStroke) return strokeWidth * pxUnits;
   const [larger, smaller] = stretches(shape.toRoot);
   return larger - smaller <= SIMILARITY * larger ? (strokeWidth * (larger + smaller)) / 2 : null;
 }

@@ -11,8 +11,12 @@ import { attribute, type XmlElement } from './tree.ts';
 export type Specified = ReadonlyMap<string, string> | null;
 
 export interface Cascade {
-  /** From rules and the `style` attribute alone. */
-  readonly css: (element: XmlElement) => Specified;
+  /**
+   * From rules and the `style` attribute alone.
+   * @param copyOf what the `use` round the element draws, null outside of one: selectors see a copy without what stands
+   * round its original (SVG 2, 5.5).
+   */
+  readonly css: (element: XmlElement, copyOf: XmlElement | null) => Specified;
   /** Presentation attributes too. */
   readonly specified: (element: XmlElement, css: Specified) => Specified;
   /** Style rules that could not be read. */
@@ -58,9 +62,9 @@ export function makeCascade(styles: readonly XmlElement[], where: string): Casca
     return declarations;
   };
   /** Elements that `use` draws again are matched once. */
-  const known = new Map<XmlElement, Specified>();
+  const known = new Map<XmlElement | null, Map<XmlElement, Specified>>();
   const inlineOnly = new Map<Declarations, Specified>();
-  const css = (element: XmlElement): Specified => {
+  const css = (element: XmlElement, copyOf: XmlElement | null): Specified => {
     const inline = parsed(element);
     if (sheets === null) {
       if (inline.length === 0) return null;
@@ -71,10 +75,15 @@ export function makeCascade(styles: readonly XmlElement[], where: string): Casca
       }
       return merged;
     }
-    let merged = known.get(element);
+    let ofCopy = known.get(copyOf);
+    if (ofCopy === undefined) {
+      ofCopy = new Map();
+      known.set(copyOf, ofCopy);
+    }
+    let merged = ofCopy.get(element);
     if (merged === undefined) {
-      merged = merge(sheets.matching(element), inline);
-      known.set(element, merged);
+      merged = merge(sheets.matching(element, copyOf), inline);
+      ofCopy.set(element, merged);
     }
     return merged;
   };

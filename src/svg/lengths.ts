@@ -24,9 +24,6 @@ export const PHYSICAL_UNIT_MM: Readonly<Partial<Record<LengthUnit, number>>> = {
 
 const LENGTH = new RegExp(`^(${NUMBER})(px|mm|cm|q|in|pt|pc|r?em|%)?$`, 'i');
 
-/** A font's em where no font is read: CSS's initial font size. */
-const EM_PX = 16;
-
 /**
  * `12`, `1.5e1mm`, `30%` → number and unit.
  * @throws ValueError for anything else, also for numbers too large for a double.
@@ -36,7 +33,7 @@ export function parseLength(text: string): Length {
   const value = match === null ? Number.NaN : toNumber(match[1]);
   if (match === null || Number.isNaN(value)) {
     throw new ValueError(
-      `${quoted(text)} is no length; write a number, or one with mm, cm, in, pt, pc, px, Q, em or %`,
+      `${quoted(text)} is no length; write a number, or one with mm, cm, in, pt, pc, px, Q or %`,
     );
   }
   // The pattern admits only the units of LengthUnit.
@@ -46,12 +43,14 @@ export function parseLength(text: string): Length {
 /**
  * A length in user units (CSS pixels of the element's own coordinates).
  * @param whole what 100 % stands for; null when the drawing does not say.
- * @throws ValueError when a percentage has nothing to refer to.
+ * @throws ValueError when a percentage has nothing to refer to, and for a length that depends on a font.
  */
 export function toUserUnits(length: Length, whole: number | null): number {
   const { value, unit } = length;
   if (unit === '' || unit === 'px') return value;
-  if (unit === 'em' || unit === 'rem') return value * EM_PX;
+  if (unit === 'em' || unit === 'rem') {
+    throw new ValueError(`${value}${unit} depends on a font; write it in px, mm or user units`);
+  }
   if (unit === '%') {
     if (whole === null)
       throw new ValueError(`${value}% of a drawing that states no size; give the svg a viewBox`);
@@ -60,7 +59,10 @@ export function toUserUnits(length: Length, whole: number | null): number {
   return (value * (PHYSICAL_UNIT_MM[unit] ?? Number.NaN)) / PX_MM;
 }
 
-/** Millimetres of a length on the outermost svg; null for a percentage. */
+/**
+ * Millimetres of a length on the outermost svg; null for a percentage.
+ * @throws ValueError for a length that depends on a font.
+ */
 export function toMillimetres(length: Length): number | null {
   if (length.unit === '%') return null;
   const physical = PHYSICAL_UNIT_MM[length.unit];

@@ -27,11 +27,14 @@ export function readSvg(text: string, where: string): SvgDrawing {
   const root = readTree(text, where);
   const { byId, styles } = indexTree(root);
   const cascade = makeCascade(styles, where);
-  const specified = cascade.specified(root, cascade.css(root));
+  const css = cascade.css(root, null);
+  const specified = cascade.specified(root, css);
   // A transform on the outermost svg turns or scales the whole picture; where to does not matter, so neither does its origin.
   const scale = readOrExplain(root, where, () => {
-    const transform = parseTransform(specified?.get('transform') ?? 'none', null);
-    const size = rootScale((name) => attribute(root, name) ?? specified?.get(name));
+    const grammar = css?.has('transform') ? 'css' : 'attribute';
+    const transform = parseTransform(specified?.get('transform') ?? 'none', grammar, null);
+    // A size in CSS wins over the attributes.
+    const size = rootScale((name) => css?.get(name) ?? attribute(root, name));
     return { ...size, toRoot: multiply(size.toRoot, transform) };
   });
   const { toRoot, viewport, ...size } = scale;

@@ -24,8 +24,11 @@ export interface SheetRule {
 export interface Sheets {
   /** Rules that were passed over. */
   readonly skipped: number;
-  /** Rules that select the element, weakest first (specificity, then order). */
-  readonly matching: (element: XmlElement) => readonly SheetRule[];
+  /**
+   * Rules that select the element, weakest first (specificity, then order).
+   * @param copyOf root of the copy that the element is part of: nothing above or beside it is seen. Null outside of copies.
+   */
+  readonly matching: (element: XmlElement, copyOf: XmlElement | null) => readonly SheetRule[];
 }
 
 /**
@@ -33,7 +36,7 @@ export interface Sheets {
  * @throws InputError for a sheet that css-tree cannot parse, and from `matching` when selectors cost too much.
  */
 export function readSheets(styles: readonly XmlElement[], where: string): Sheets | null {
-  const budget = { stepsLeft: MAX_SELECTOR_STEPS, where };
+  const budget: Budget = { stepsLeft: MAX_SELECTOR_STEPS, where, copyOf: null };
   const reading: Reading = { selectable: [], skipped: 0, rules: 0, options: adapterOptions(budget) };
   for (const element of styles) {
     const type = attribute(element, 'type')?.trim().toLowerCase() ?? '';
@@ -62,6 +65,8 @@ interface Reading {
 interface Budget {
   stepsLeft: number;
   readonly where: string;
+  /** Root of the copy in which selectors are matched just now. */
+  copyOf: XmlElement | null;
 }
 
 function readSheet(element: XmlElement, where: string, reading: Reading): void {
@@ -176,7 +181,8 @@ function adapterOptions(budget: Budget): Options<XmlElement, XmlElement> {
       );
     }
   };
-  const siblings = (element: XmlElement): readonly XmlElement[] => element.parent?.children ?? [element];
+  const siblings = (element: XmlElement): readonly XmlElement[] =>
+    element === budget.copyOf ? [element] : (element.parent?.children ?? [element]);
   return {
     xmlMode: true,
     adapter: {
@@ -203,7 +209,7 @@ function adapterOptions(budget: Budget): Options<XmlElement, XmlElement> {
       },
       prevElementSibling: (element) => {
         spend(1);
-        return siblings(element)[element.index - 1] ?? null;
+        return element === budget.copyOf ? null : (siblings(element)[element.index - 1] ?? null);
       },
       getName: (element) => {
         spend(1);
@@ -211,7 +217,7 @@ function adapterOptions(budget: Budget): Options<XmlElement, XmlElement> {
       },
       getParent: (element) => {
         spend(1);
-        return element.parent;
+        return element === budget.copyOf ? null : element.parent;
       },
       getText: (element) => {
         spend(1 + element.text.length);
@@ -271,14 +277,15 @@ function keyOf(selector: Selector): string {
 function fileByKey(
   selectable: readonly Selectable[],
   budget: Budget,
-): (element: XmlElement) => readonly SheetRule[] {
+): (element: XmlElement, copyOf: XmlElement | null) => readonly SheetRule[] {
   const byKey = new Map<string, Selectable[]>();
   for (const one of selectable) {
     const filed = byKey.get(one.key);
     if (filed === undefined) byKey.set(one.key, [one]);
     else filed.push(one);
   }
-  return (element) => {
+  return (element, copyOf) => {
+    budget.copyOf = copyOf;
     const found: Selectable[] = [];
     for (const key of keysOf(element)) {
       const filed = byKey.get(key);

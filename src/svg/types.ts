@@ -59,7 +59,7 @@ export interface ShapeStyle {
   readonly strokeWidth: number;
   readonly dashed: boolean;
   readonly linecap: 'butt' | 'round' | 'square';
-  /** vector-effect: non-scaling-stroke, so strokeWidth is in root user units already. */
+  /** vector-effect: non-scaling-stroke, so strokeWidth is in CSS px of the page, whatever the transforms and the viewBox. */
   readonly nonScalingStroke: boolean;
   /** What may hide or add to the stroke: each raises a caution on a channel. */
   readonly disguises: readonly ('clip-path' | 'mask' | 'opacity' | 'marker' | 'filter')[];

@@ -62,8 +62,8 @@ interface Context extends Surroundings {
   readonly chain: GroupChain | null;
   /** The element is drawn by this `use`, directly. */
   readonly use: XmlElement | null;
-  /** Somewhere inside a `use`, where the same element may be drawn again. */
-  readonly repeated: boolean;
+  /** What the innermost `use` round the element draws; null outside of one. */
+  readonly copyOf: XmlElement | null;
 }
 
 /** The enclosing groups that have a name or a depth, innermost first; listed once for all shapes in them. */
@@ -109,6 +109,9 @@ const UNREAD: ReadonlySet<string> = new Set(
   ).split(' '),
 );
 
+/** Attributes that CSS knows as properties too (SVG 2, 7 and 9.3.2); those of lines and polygons are none. */
+const GEOMETRY_PROPERTIES: ReadonlySet<string> = new Set('x y width height cx cy r rx ry d'.split(' '));
+
 /** What of an element is not read, as the key of the count; null when all of it is. */
 type PassedOver = string | null;
 
@@ -128,7 +131,7 @@ class Walk {
   /** Paths of elements that `use` draws again, with the viewport that their percentages referred to. */
   readonly #paths = new Map<
     XmlElement,
-    { readonly viewport: Viewport | null; readonly path: readonly PathCommand[] }
+    { readonly viewport: Viewport | null; readonly css: Specified; readonly path: readonly PathCommand[] }
   >();
   #lastStyle: { readonly key: readonly unknown[]; readonly style: ShapeStyle } | null = null;
 
@@ -146,7 +149,7 @@ class Walk {
     const depth = attribute(root, 'data-depth') ?? null;
     const chain =
       depth === null ? null : { group: { name: null, dataDepth: depth }, outer: null, list: null };
-    this.#push(root, root.children, { ...surroundings, chain, use: null, repeated: false });
+    this.#push(root, root.children, { ...surroundings, chain, use: null, copyOf: null });
   }
 
   leave(frame: Frame): void {
@@ -175,11 +178,13 @@ class Walk {
     const isContainer = name === 'g' || name === 'a' || name === 'svg' || name === 'switch' || name === 'use';
     if (!isShape && !isContainer && !isSymbolInUse) return 'unknown element';
 
-    const css = this.#cascade.css(element);
+    const condition = unmetCondition(element);
+    if (condition !== null) return condition;
+    const css = this.#cascade.css(element, context.copyOf);
     const specified = this.#cascade.specified(element, css);
     if (ownKeyword(specified, 'display', 'inline') === 'none') return null;
     const style = inherit(context.style, specified);
-    const toRoot = multiply(context.toRoot, ownTransform(specified, context.viewport));
+    const toRoot = multiply(context.toRoot, ownTransform(css, specified, context.viewport));
     if (!toRoot.every(Number.isFinite)) throw new ValueError('its transforms together are too large');
     if (toRoot[0] * toRoot[3] - toRoot[1] * toRoot[2] === 0) return 'shape flattened by its transform';
     const disguises = addDisguises(context.disguises, specified);
@@ -233,7 +238,7 @@ class Walk {
     return null;
   }
 
-  /** The first child that can be drawn here; one that needs an extension (an editor's private data) cannot. */
+  /** The first child that can be drawn here. */
   #chosen(element: XmlElement): readonly XmlElement[] {
     this.#visit(element.children.length, element);
     const chosen = element.children.find(
@@ -241,7 +246,7 @@ class Walk {
         child.isSvg &&
         !NEVER_DRAWN.has(child.name) &&
         child.name !== 'foreignObject' &&
-        !attribute(child, 'requiredExtensions')?.trim(),
+        unmetCondition(child) === null,
     );
     return chosen === undefined ? [] : [chosen];
   }
@@ -254,6 +259,7 @@ class Walk {
     if (this.#open.has(target) || target === element) {
       throw new ValueError(`it draws ${quoted(href)}, which it is part of; point href at another element`);
     }
+    refuseCssSize(css, 'width', 'height');
     const x = side(element, css, 'x', context.viewport) ?? 0;
     const y = side(element, css, 'y', context.viewport) ?? 0;
     const isShape = SHAPE_TAGS.has(target.name);
@@ -261,21 +267,21 @@ class Walk {
     const depth = attribute(element, 'data-depth') ?? null;
     const chain = isShape ? context.chain : extend(context.chain, element, depth);
     const toRoot = x === 0 && y === 0 ? context.toRoot : multiply(context.toRoot, translation(x, y));
-    this.#push(element, [target], { ...context, toRoot, chain, use: element, repeated: true });
+    this.#push(element, [target], { ...context, toRoot, chain, use: element, copyOf: target });
     return null;
   }
 
   #drawViewport(element: XmlElement, css: Specified, context: Context): PassedOver {
     const { viewport, use } = context;
+    if (element.name === 'svg') refuseCssSize(css, 'x', 'y', 'width', 'height');
     // SVG 2, 5.6.2: the width and height of a use replace those of the svg or symbol that it draws.
-    const useCss = use === null ? null : this.#cascade.css(use);
     const size = (name: 'width' | 'height'): number | null => {
-      const given = (use && side(use, useCss, name, viewport)) ?? side(element, css, name, viewport);
+      const given = (use && side(use, null, name, viewport)) ?? side(element, null, name, viewport);
       if (given !== null && given < 0) throw new ValueError(`${name} is negative; a size is zero or more`);
       return given ?? viewport?.[name] ?? null;
     };
-    const x = side(element, css, 'x', viewport) ?? 0;
-    const y = side(element, css, 'y', viewport) ?? 0;
+    const x = side(element, null, 'x', viewport) ?? 0;
+    const y = side(element, null, 'y', viewport) ?? 0;
     const width = size('width');
     const height = size('height');
     if (width === 0 || height === 0) return 'svg without size';
@@ -302,10 +308,11 @@ class Walk {
   }
 
   #pathOf(element: XmlElement, tag: ShapeTag, css: Specified, context: Context): readonly PathCommand[] {
-    const known = context.repeated ? this.#paths.get(element) : undefined;
-    if (known !== undefined && known.viewport === context.viewport) return known.path;
-    const path = shapePath(tag, (name) => css?.get(name) ?? attribute(element, name), context.viewport);
-    if (context.repeated) this.#paths.set(element, { viewport: context.viewport, path });
+    const known = context.copyOf !== null ? this.#paths.get(element) : undefined;
+    if (known !== undefined && known.viewport === context.viewport && known.css === css) return known.path;
+    const ofCss = (name: string) => (GEOMETRY_PROPERTIES.has(name) ? css?.get(name) : undefined);
+    const path = shapePath(tag, (name) => ofCss(name) ?? attribute(element, name), context.viewport);
+    if (context.copyOf !== null) this.#paths.set(element, { viewport: context.viewport, css, path });
     return path;
   }
 
@@ -352,8 +359,28 @@ class Walk {
   }
 }
 
+/**
+ * SVG 2, 5.9: what the element asks of the viewer, as the key of the count, when a viewer without extensions that is set
+ * to English does not have it; else null.
+ */
+function unmetCondition(element: XmlElement): string | null {
+  if (attribute(element, 'requiredExtensions') !== undefined) return 'element that needs an extension';
+  const languages = attribute(element, 'systemLanguage');
+  if (languages === undefined) return null;
+  const hasEnglish = languages.split(',').some((one) => /^en(?:-|$)/i.test(one.trim()));
+  return hasEnglish ? null : 'element in another language';
+}
+
+/** By SVG 2 these properties count; browsers look at the attributes alone. */
+function refuseCssSize(css: Specified, ...names: readonly ('x' | 'y' | 'width' | 'height')[]): void {
+  const given = names.find((name) => css?.has(name));
+  if (given !== undefined) {
+    throw new ValueError(`${given} in CSS is read by some programs only; write it as an attribute`);
+  }
+}
+
 /** `transform` about `transform-origin` (CSS Transforms 1, 4). */
-function ownTransform(specified: Specified, viewport: Viewport | null): Matrix {
+function ownTransform(css: Specified, specified: Specified, viewport: Viewport | null): Matrix {
   const text = specified?.get('transform') ?? 'none';
   for (const property of ['translate', 'rotate', 'scale', 'zoom', 'offset-path']) {
     const value = specified?.get(property);
@@ -365,6 +392,7 @@ function ownTransform(specified: Specified, viewport: Viewport | null): Matrix {
   }
   const matrix = parseTransform(
     /^(?:initial|unset|revert|revert-layer)$/i.test(text) ? 'none' : text,
+    css?.has('transform') ? 'css' : 'attribute',
     viewport,
   );
   const origin = specified?.get('transform-origin');

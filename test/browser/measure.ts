@@ -87,12 +87,12 @@ interface Node {
   readonly shadowRoots?: readonly Node[];
 }
 
-const SHAPES: ReadonlySet<string> = new Set(
-  'path line polyline polygon rect circle ellipse'.split(' '),
-);
+const SHAPES: ReadonlySet<string> = new Set('path line polyline polygon rect circle ellipse'.split(' '));
 
 const NEVER_DRAWN: ReadonlySet<string> = new Set(
-  'defs symbol clipPath mask pattern marker linearGradient radialGradient filter title desc metadata style'.split(' '),
+  'defs symbol clipPath mask pattern marker linearGradient radialGradient filter title desc metadata style'.split(
+    ' ',
+  ),
 );
 
 /** `place`: a copy is in the shadow tree of a `use`; its root may be a symbol. */

@@ -20,9 +20,11 @@ const ARCS_AGREE = 5e-4;
 
 /** What is read in another way than the browser draws, on purpose: `file#id` → what and why. */
 const DIFFERENT: Readonly<Record<string, string>> = {
-  'paths/separators#white': 'a closed path of two points is the one line that it paints, not a line there and back',
+  'paths/separators#white':
+    'a closed path of two points is the one line that it paints, not a line there and back',
   'shapes/rects#auto': 'SVG 2 lets the attribute rx be auto; the browser takes it for 0',
-  'shapes/polygons#two': 'a closed path of two points is the one line that it paints, not a line there and back',
+  'shapes/polygons#two':
+    'a closed path of two points is the one line that it paints, not a line there and back',
 };
 
 const files = readdirSync(CORPUS, { recursive: true, encoding: 'utf8' })
@@ -62,15 +64,19 @@ describe.skipIf(!hasChromium)('Reading agrees with a browser on (needs /usr/bin/
       const agree = shape.path.some(({ kind }) => kind === 'arc') ? ARCS_AGREE : AGREE;
 
       const lengthsDiffer = !(Math.abs(length - their.length) <= agree * their.length);
-      expect(lengthsDiffer, `${label}: ${length} long, in the browser ${their.length}`).toBe(label in DIFFERENT);
+      expect(lengthsDiffer, `${label}: ${length} long, in the browser ${their.length}`).toBe(
+        label in DIFFERENT,
+      );
       if (label in DIFFERENT) continue;
 
       const matrix = scaled(shape.toRoot, screen.pxPerUnit);
       const [size] = stretches(matrix);
       const shift = shiftBetween(shape, their, screen);
       for (let k = 0; k < 4; k++) {
-        expect(Math.abs(matrix[k] - their.toScreen[k]), `${label}: matrix ${matrix} and ${their.toScreen}`)
-          .toBeLessThanOrEqual(AGREE * size);
+        expect(
+          Math.abs(matrix[k] - their.toScreen[k]),
+          `${label}: matrix ${matrix} and ${their.toScreen}`,
+        ).toBeLessThanOrEqual(AGREE * size);
       }
       for (const k of [0, 1] as const)
         expect(Math.abs(shift[k] - first![k]), `${label}: moved`).toBeLessThanOrEqual(AGREE * screen.sizePx);
@@ -78,12 +84,16 @@ describe.skipIf(!hasChromium)('Reading agrees with a browser on (needs /usr/bin/
       const points = await their.pointsAt(vertices.map(({ share }) => share));
       for (const [k, { x, y }] of vertices.entries()) {
         const away = Math.hypot(x - points[k][0], y - points[k][1]);
-        expect(away, `${label}: (${x}, ${y}) is (${points[k]}) in the browser`)
-          .toBeLessThanOrEqual(agree * length + 4e-7 * (Math.abs(x) + Math.abs(y)));
+        expect(away, `${label}: (${x}, ${y}) is (${points[k]}) in the browser`).toBeLessThanOrEqual(
+          agree * length + 4e-7 * (Math.abs(x) + Math.abs(y)),
+        );
       }
 
-      expect({ label, stroked: shape.style.stroked, filled: shape.style.filled })
-        .toEqual({ label, stroked: their.stroked, filled: their.filled });
+      expect({ label, stroked: shape.style.stroked, filled: shape.style.filled }).toEqual({
+        label,
+        stroked: their.stroked,
+        filled: their.filled,
+      });
       if (!their.stroked) continue;
       const [larger, smaller] = stretches(their.toScreen);
       const isSimilar = larger - smaller <= AGREE * larger;
@@ -92,8 +102,10 @@ describe.skipIf(!hasChromium)('Reading agrees with a browser on (needs /usr/bin/
       expect(width !== null, `${label}: has one width`).toBe(isSimilar || their.nonScaling);
       if (width === null || !isSimilar) continue;
       const theirPx = their.strokeWidth * larger;
-      expect(Math.abs(width * screen.pxPerUnit - theirPx), `${label}: ${width} wide, in the browser ${theirPx} px`)
-        .toBeLessThanOrEqual(AGREE * theirPx);
+      expect(
+        Math.abs(width * screen.pxPerUnit - theirPx),
+        `${label}: ${width} wide, in the browser ${theirPx} px`,
+      ).toBeLessThanOrEqual(AGREE * theirPx);
     }
   });
 });
@@ -161,6 +173,7 @@ function shiftBetween(shape: Shape, their: BrowserShape, { pxPerUnit }: Screen):
 /** Stroke widths in root units by ordinal, as the layout has them for its strokes. */
 function strokeWidths(drawing: SvgDrawing): ReadonlyMap<number, number | null> {
   const widths = new Map<number, number | null>();
-  for (const item of layOut(drawing, 'test.svg').items) if (item.kind === 'stroke') widths.set(item.ordinal, item.width);
+  for (const item of layOut(drawing, 'test.svg').items)
+    if (item.kind === 'stroke') widths.set(item.ordinal, item.width);
   return widths;
 }

@@ -51,7 +51,7 @@ describe('published values through rillcheck section', () => {
     expect(square.resistance_pa_s_m3 / 28.4541537695623e10).toBeCloseTo(1, 12);
   });
 
-  it('has the torsion constants of Timoshenko & Goodier, R = 4 µ L/(β w h³)', async () => {
+  it('has the torsion constants of Timoshenko & Goodier, R = 4 µ L/(β w h³), whose 0.313 for 10:1 is 0.0007 above the series', async () => {
     for (const [ratio, beta] of [
       [1, 0.141],
       [2, 0.229],
@@ -61,7 +61,7 @@ describe('published values through rillcheck section', () => {
     ]) {
       const one = await duct(100 * ratio, 100, 10, '--flow', '1 uL/min', ...ONE);
       const found = (4 * 1e-3 * 10e-3) / (one.resistance_pa_s_m3 * one.width_m * one.depth_m ** 3);
-      expect(Math.abs(found - beta)).toBeLessThan(0.6e-3);
+      expect(Math.abs(found - beta)).toBeLessThan(0.7e-3);
     }
   });
 
