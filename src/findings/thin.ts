@@ -124,10 +124,16 @@ function partInProportion(
   const route = shortest(paths.routes(paths.arcAt(a, s), paths.arcAt(b, t), apartMm), s, t);
   if (route === null) return false;
   if (route.kind === 'along') return isProportional((3 * s + t) / 4, (s + 3 * t) / 4);
-  // From a port the sides part at its centre, not at the rim where the way begins; that they only move apart is enough.
+  // From a port the sides part at its centre, not at the rim where the way begins; and an end that was carried on begins
+  // inside the other's strip, wherever the node is. There it is enough that they only move apart.
   const node = route.vertex;
-  if (node >= 0 && node < network.nodeCount && network.nodePort[node] >= 0) return true;
+  const isPort = node >= 0 && node < network.nodeCount && network.nodePort[node] >= 0;
+  if (isPort || (node >= 0 && (isCarriedOn(a, route.leaveAt) || isCarriedOn(b, route.enterAt)))) return true;
   return isProportional((s + route.leaveAt) / 2, (t + route.enterAt) / 2);
+
+  function isCarriedOn(centreline: number, position: number): boolean {
+    return position < 0 || position > network.trace.near.pieces.centrelineLength[centreline];
+  }
 
   function isProportional(halfS: number, halfT: number): boolean {
     return distanceBetween(s, t) >= 1.5 * distanceBetween(halfS, halfT);
