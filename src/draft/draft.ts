@@ -122,7 +122,8 @@ function layerLines(chip: Chip, layout: Layout): string[] {
     const innermost = groups[groups.length - 1];
     if (layerKey(innermost) !== key) layer.inner.add(innermost);
   }
-  const needed = loose > 0 ? `; ${counted(loose, 'channel')} ${loose === 1 ? 'lies' : 'lie'} in no layer` : '';
+  const needed =
+    loose > 0 ? `; ${counted(loose, 'channel')} ${loose === 1 ? 'lies' : 'lie'} in no layer` : '';
   return [
     `depth: # fill in: etch depth of every layer that is given none below, for example 50 um${needed}`,
     'layers: # depth of each layer; also profile: isotropic (wet-etched), plane: top, or the word ignore for a layer that is not read',
@@ -193,7 +194,9 @@ function channelLines(chip: Chip, layout: Layout): string[] {
     ...lines,
     ...(unnamed === 0
       ? []
-      : [`# ${counted(unnamed, 'channel')} ${unnamed === 1 ? 'has' : 'have'} no name; name in the drawing those that need a window`]),
+      : [
+          `# ${counted(unnamed, 'channel')} ${unnamed === 1 ? 'has' : 'have'} no name; name in the drawing those that need a window`,
+        ]),
     '',
   ];
 }

@@ -53,9 +53,10 @@ export function findEdgeFaults(context: FindingContext, edge: ChipEdge, marginMm
       } else if (!inside) {
         near = measure(outline, lineOf(pieces, i), pieces.half[i]);
       }
-      if (near !== null && isFault(near.gapMm, marginMm)) {
-        worst = worst === null ? near : worseOf(worst, near);
-      } else if (worst !== null) {
+      const isAtFault = near !== null && isFault(near.gapMm, marginMm);
+      if (near !== null && isAtFault) worst = worst === null ? near : worseOf(worst, near);
+      // Two pieces that come near the edge and meet far from it are two places.
+      if (worst !== null && !(isAtFault && isFault(gapAtEnd(i), marginMm))) {
         faults.push(toFault(name, false, worst));
         worst = null;
       }
@@ -63,6 +64,10 @@ export function findEdgeFaults(context: FindingContext, edge: ChipEdge, marginMm
     if (worst !== null) faults.push(toFault(name, false, worst));
   }
   return faults;
+
+  function gapAtEnd(i: number): number {
+    return measure(outline, [pieces.x2[i], pieces.y2[i], pieces.x2[i], pieces.y2[i]], pieces.half[i]).gapMm;
+  }
 
   /** Nearest to the edge, or farthest beyond it, over the parts of a piece's painted area. */
   function nearOfPiece(i: number): Near {

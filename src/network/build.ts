@@ -211,7 +211,17 @@ function toReachJoints(
     jointMm[r] += atNodes.sideMm[2 * a] + atNodes.sideMm[2 * a + 1];
     boundMm[r] += atNodes.sideBoundMm[2 * a] + atNodes.sideBoundMm[2 * a + 1];
   }
-  if (draft.chip.joints === 'resolved') return { jointMm, boundMm };
+  if (draft.chip.joints === 'resolved') {
+    // Joints apart as the rules ask leave every duct most of its length. Should drawing and slack conspire, half of it is
+    // kept and the rest goes to the bound, for a duct without resistance has no flow.
+    for (let r = 0; r < reaches.count; r++) {
+      const least = -0.5 * reaches.resolvedMm[r];
+      if (jointMm[r] >= least) continue;
+      boundMm[r] += least - jointMm[r];
+      jointMm[r] = least;
+    }
+    return { jointMm, boundMm };
+  }
   return {
     jointMm: new Float64Array(reaches.count),
     boundMm: boundMm.map(

@@ -102,7 +102,8 @@ function headOf({ tool, chip, layoutFile }: ResultInput): Head {
       unit_mm: chip.unitMm,
       ignored: chip.ignored,
     },
-    run_sheet: chip.sheet === null ? null : { file: chip.sheet.file, sha256: chip.sheet.sha256 },
+    run_sheet:
+      chip.sheet === null ? null : { file: withoutFolders(chip.sheet.file), sha256: chip.sheet.sha256 },
   };
 }
 
@@ -296,4 +297,9 @@ function findingRow(finding: FindingReport['findings'][number]): FindingRow {
 function known(value: number): number | null {
   if (!Number.isFinite(value)) return null;
   return value === 0 ? 0 : value;
+}
+
+/** Reports name files only, so that they are the same wherever the program was started. */
+function withoutFolders(file: string): string {
+  return file.slice(Math.max(file.lastIndexOf('/'), file.lastIndexOf('\\')) + 1);
 }

@@ -94,7 +94,7 @@ function normalCurve(
 }
 
 function ticksOf(low: number, high: number): { at: number; text: string }[] {
-  const step = niceStep((high - low) / 3);
+  const step = niceStep((high - low) / 5);
   const ticks: { at: number; text: string }[] = [];
   for (let k = Math.ceil(low / step); k * step <= high; k++)
     ticks.push({ at: k * step, text: formatNumber(k * step) });

@@ -24,7 +24,7 @@ export function readSvg(text: string, where: string): SvgDrawing {
       `the SVG is over ${MAX_SVG_BYTES / 1e6} MB (the limit); split or simplify the drawing`,
     );
   }
-  const root = readTree(text, where);
+  const { root, foreignSheets } = readTree(text, where);
   const { byId, styles } = indexTree(root);
   const cascade = makeCascade(styles, where);
   const css = cascade.css(root, null);
@@ -50,6 +50,7 @@ export function readSvg(text: string, where: string): SvgDrawing {
     : { shapes: [], unread: new Map<string, number>() };
   const unread = new Map(walked.unread);
   if (cascade.skippedRules > 0) unread.set('style rule', cascade.skippedRules);
+  if (foreignSheets > 0) unread.set('style sheet in another file', foreignSheets);
   return { ...size, shapes: walked.shapes, unread: Object.fromEntries(unread) };
 }
 

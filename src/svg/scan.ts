@@ -24,6 +24,8 @@ export interface ScannedXml {
   /** Well-formed, with one root; tag number i carries k="_i". */
   readonly skeleton: string;
   readonly tags: readonly ScannedTag[];
+  /** Style sheets in other files that the file asks for (`<?xml-stylesheet … ?>`); none is opened. */
+  readonly foreignSheets: number;
   /** Decoded character data of `title` and `style` elements; `_i;` in the skeleton. */
   readonly texts: readonly string[];
 }
@@ -39,7 +41,7 @@ export function scanXml(text: string, where: string): ScannedXml {
     if (text.startsWith('<!--', open)) scan.passOver('<!--', '-->', 'a comment');
     else if (text.startsWith('<![CDATA[', open)) scan.cdata();
     else if (text.startsWith('<!', open)) scan.doctype();
-    else if (text.startsWith('<?', open)) scan.passOver('<?', '?>', 'a processing instruction');
+    else if (text.startsWith('<?', open)) scan.processingInstruction();
     else if (text.startsWith('</', open)) scan.closingTag();
     else scan.openingTag();
   }
@@ -55,6 +57,7 @@ class XmlScan {
   at = 0;
   #line = 1;
   #nextBreak: number;
+  #foreignSheets = 0;
   readonly #tags: ScannedTag[] = [];
   readonly #texts: string[] = [];
   readonly #skeleton: string[] = [];
@@ -115,6 +118,11 @@ class XmlScan {
     const end = this.#text.indexOf(closing, this.at + opening.length);
     if (end < 0) throw this.#cutOff(what);
     this.#moveTo(end + closing.length);
+  }
+
+  processingInstruction(): void {
+    if (/^<\?xml-stylesheet\s/.test(this.#text.slice(this.at, this.at + 20))) this.#foreignSheets++;
+    this.passOver('<?', '?>', 'a processing instruction');
   }
 
   cdata(): void {
@@ -199,7 +207,12 @@ class XmlScan {
 
   finish(): ScannedXml {
     if (this.#open.length > 0 || this.#tags.length === 0) throw this.#cutOff('the file');
-    return { skeleton: this.#skeleton.join(''), tags: this.#tags, texts: this.#texts };
+    return {
+      skeleton: this.#skeleton.join(''),
+      tags: this.#tags,
+      foreignSheets: this.#foreignSheets,
+      texts: this.#texts,
+    };
   }
 
   /** Leaves #tagEnd ready to match at the end of the attributes. */

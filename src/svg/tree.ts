@@ -23,11 +23,17 @@ export interface XmlElement {
   readonly text: string;
 }
 
+export interface XmlTree {
+  readonly root: XmlElement;
+  /** Style sheets in other files that the file asks for; none is opened. */
+  readonly foreignSheets: number;
+}
+
 /**
  * The element tree of an SVG file; svg-parser builds it. Comments, processing instructions and other text are left out.
  * @throws InputError when the text is not XML, is cut off, or its root is not SVG's `svg`.
  */
-export function readTree(text: string, where: string): XmlElement {
+export function readTree(text: string, where: string): XmlTree {
   const scanned = scanXml(text, where);
   const root = buildTree(parseSkeleton(scanned, where), scanned);
   if (root === 'too many prefixes') {
@@ -44,7 +50,7 @@ export function readTree(text: string, where: string): XmlElement {
       `XML, but not SVG: its root element is <${written}>${why}, where <svg> is needed; save the drawing as plain SVG`,
     );
   }
-  return root;
+  return { root, foreignSheets: scanned.foreignSheets };
 }
 
 /** The value of an attribute by its full name, or undefined. */

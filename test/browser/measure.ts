@@ -29,9 +29,11 @@ export async function measureFile(page: Page, session: CDPSession, file: string)
   // DOM.getDocument types its nodes with many more fields than are used here.
   for (const { nodeId, isCopy } of drawnNodes(root as Node)) {
     const { object } = await session.send('DOM.resolveNode', { nodeId });
+    if (object.objectId === undefined) throw new Error(`node ${nodeId} is no object`);
+    const { objectId } = object;
     const call = async (body: string, ...args: readonly unknown[]): Promise<unknown> => {
       const { result, exceptionDetails } = await session.send('Runtime.callFunctionOn', {
-        objectId: object.objectId,
+        objectId,
         functionDeclaration: body,
         arguments: args.map((value) => ({ value })),
         returnByValue: true,

@@ -4,6 +4,7 @@ import { join } from 'node:path';
 import fc from 'fast-check';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import { run } from '../../src/cli.ts';
+import { isDraftable } from '../../src/draft/yaml-text.ts';
 import { parseRunSheet } from '../../src/runsheet/parse.ts';
 import { fakeIo } from './fake-io.ts';
 
@@ -44,7 +45,9 @@ describe('rillcheck draft', () => {
       const sheetName = name.replace('.svg', '.run.yaml');
       expect(out).toContain(`${sheetName} written`);
       const sheet = parseRunSheet(read(sheetName), sheetName);
-      expect(Object.keys(sheet.ports).sort()).toEqual(bare.ports.map((port: { name: string }) => port.name).sort());
+      expect(Object.keys(sheet.ports).sort()).toEqual(
+        bare.ports.map((port: { name: string }) => port.name).sort(),
+      );
       const channels = new Set(bare.reaches.map((reach: { channel: string }) => reach.channel));
       for (const channel of channels) expect(Object.keys(sheet.channels)).toContain(channel);
       const drafted = JSON.parse((await rillcheck('check', name, '--json')).out);
@@ -59,7 +62,8 @@ describe('rillcheck draft', () => {
       expect(blockers(drafted)).toEqual(expect.arrayContaining(['missing-depth', 'unset-port']));
       const unset = drafted.findings.filter(({ rule }: { rule: string }) => rule === 'unset-port');
       expect(unset).toHaveLength(drafted.ports.length);
-      for (const { names } of unset) expect(read(sheetName)).toMatch(new RegExp(`^ {2}${names[0]}: \\{\\} # fill in`, 'm'));
+      for (const { names } of unset)
+        expect(read(sheetName)).toMatch(new RegExp(`^ {2}${names[0]}: \\{\\} # fill in`, 'm'));
     },
   );
 
@@ -81,7 +85,9 @@ describe('rillcheck draft', () => {
     put('culture.run.yaml', 'depth: 50 um\n');
     const { code, out, err } = await rillcheck('draft', 'culture.svg');
     expect({ code, out }).toEqual({ code: 2, out: '' });
-    expect(err).toBe('rillcheck: culture.run.yaml: there is a run sheet already; it is left as it is (--force writes over it)\n');
+    expect(err).toBe(
+      'rillcheck: culture.run.yaml: there is a run sheet already; it is left as it is (--force writes over it)\n',
+    );
     expect(read('culture.run.yaml')).toBe('depth: 50 um\n');
     expect((await rillcheck('draft', 'culture.svg', '--force')).code).toBe(0);
     expect(read('culture.run.yaml')).toContain('fill in');
@@ -97,7 +103,10 @@ describe('rillcheck draft', () => {
   });
 
   it('says that a scale is missing where the drawing states none', async () => {
-    put('plain.svg', '<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 100 100"><path fill="none" stroke="#000" d="M10 10H90"/><circle cx="10" cy="10" r="3"/></svg>');
+    put(
+      'plain.svg',
+      '<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 100 100"><path fill="none" stroke="#000" d="M10 10H90"/><circle cx="10" cy="10" r="3"/></svg>',
+    );
     const { out } = await rillcheck('draft', 'plain.svg', '-r', '-');
     expect(out).toMatch(/^unit: # fill in: size of one unit of the drawing/m);
     expect(out).toMatch(/^# port-1: .* has no name/m);
@@ -112,35 +121,93 @@ describe('rillcheck draft', () => {
   it('takes names for data, whatever they hold: the sheet stays valid and means the same names', async () => {
     const name = fc.oneof(
       fc.string({ unit: 'binary', minLength: 1, maxLength: 12 }),
-      fc.constantFrom('yes', 'null', '007', '1e3', '- a', '# b', 'a: b', '{}', '[x', '&a', '*a', '!t', '%', '@', '`', '"', "'", '|', '>', '? k', 'a\nports: open', '\u2028', '\u0085', '__proto__', 'constructor', 'a # b', '~', '=', '<<', 'lane-*', 'é', '💧', 'x'.repeat(400)),
+      fc.constantFrom(
+        'yes',
+        'null',
+        '007',
+        '1e3',
+        '- a',
+        '# b',
+        'a: b',
+        '{}',
+        '[x',
+        '&a',
+        '*a',
+        '!t',
+        '%',
+        '@',
+        '`',
+        '"',
+        "'",
+        '|',
+        '>',
+        '? k',
+        'a\nports: open',
+        '\u2028',
+        '\u0085',
+        '__proto__',
+        'constructor',
+        'a # b',
+        '~',
+        '=',
+        '<<',
+        'lane-*',
+        'é',
+        '💧',
+        'x'.repeat(400),
+      ),
     );
     await fc.assert(
-      fc.asyncProperty(fc.uniqueArray(name, { minLength: 6, maxLength: 6, selector: (text) => text.trim() }), async (names) => {
-        const clean = names.map((text) => text.replace(/[^\t\n\r\u0020-\ud7ff\ue000-\ufffd\u{10000}-\u{10ffff}]/gu, '?'));
-        const at = clean.map((text) => escapeXml(text));
-        put(
-          'names.svg',
-          `<svg xmlns="http://www.w3.org/2000/svg" width="40mm" height="20mm" viewBox="0 0 40 20"><g data-name="${at[0]}" fill="none" stroke="#000" stroke-width=".2"><path data-name="${at[1]}" d="M5 5H30"/><path data-name="${at[2]}" d="M5 10H30"/></g><circle data-name="${at[3]}" cx="5" cy="5" r=".5"/><circle data-name="${at[4]}" cx="30" cy="5" r=".5"/><circle data-name="${at[5]}" cx="5" cy="10" r=".5"/></svg>`,
-        );
-        const bare = await rillcheck('check', 'names.svg', '--json', '--detail', 'ports');
-        if (bare.code === 2) return; // two ports of one name, once trimmed
-        const { code, out } = await rillcheck('draft', 'names.svg', '-r', '-');
-        expect(code).toBe(0);
-        put('names.draft.yaml', out);
-        const drafted = await rillcheck('check', 'names.svg', '-r', 'names.draft.yaml', '--json', '--detail', 'ports');
-        expect(drafted.err).toBe('');
-        expect(drafted.code).toBe(1);
-        const known = new Set(JSON.parse(bare.out).ports.map((port: { name: string }) => port.name));
-        for (const port of Object.keys(parseRunSheet(out, 'names.draft.yaml').ports)) expect(known).toContain(port);
-        rmSync(join(folder, 'names.draft.yaml'));
-      }),
+      fc.asyncProperty(
+        fc.uniqueArray(name, { minLength: 6, maxLength: 6, selector: (text) => text.trim() }),
+        async (names) => {
+          const clean = names.map((text) =>
+            text.replace(/[^\t\n\r\u0020-\ud7ff\ue000-\ufffd\u{10000}-\u{10ffff}]/gu, '?'),
+          );
+          const at = clean.map((text) => escapeXml(text));
+          put(
+            'names.svg',
+            `<svg xmlns="http://www.w3.org/2000/svg" width="40mm" height="20mm" viewBox="0 0 40 20"><g data-name="${at[0]}" fill="none" stroke="#000" stroke-width=".2"><path data-name="${at[1]}" d="M5 5H30"/><path data-name="${at[2]}" d="M5 10H30"/></g><circle data-name="${at[3]}" cx="5" cy="5" r=".5"/><circle data-name="${at[4]}" cx="30" cy="5" r=".5"/><circle data-name="${at[5]}" cx="5" cy="10" r=".5"/></svg>`,
+          );
+          const bare = await rillcheck('check', 'names.svg', '--json', '--detail', 'ports');
+          if (bare.code === 2) return; // two ports of one name, once trimmed
+          const { code, out } = await rillcheck('draft', 'names.svg', '-r', '-');
+          expect(code).toBe(0);
+          put('names.draft.yaml', out);
+          const drafted = await rillcheck(
+            'check',
+            'names.svg',
+            '-r',
+            'names.draft.yaml',
+            '--json',
+            '--detail',
+            'ports',
+          );
+          expect(drafted.err).toBe('');
+          expect(drafted.code).toBe(1);
+          const known = new Set<string>(
+            JSON.parse(bare.out).ports.map((port: { name: string }) => port.name),
+          );
+          const ports = Object.keys(parseRunSheet(out, 'names.draft.yaml').ports);
+          for (const port of ports) expect(known).toContain(port);
+          for (const port of known)
+            if (!/^port-\d+$/.test(port) && isDraftable(port)) expect(ports).toContain(port);
+          rmSync(join(folder, 'names.draft.yaml'));
+        },
+      ),
       { seed: 11, numRuns: 150 },
     );
   }, 60_000);
 
   it('stays small enough to be read again for a drawing of very many channels', async () => {
-    const lines = Array.from({ length: 20_000 }, (_, i) => `<path data-name="a-rather-long-name-of-a-channel-${i}" d="M1 ${1 + i * 0.01}h5"/>`);
-    put('many.svg', `<svg xmlns="http://www.w3.org/2000/svg" width="40mm" height="220mm" viewBox="0 0 40 220"><g fill="none" stroke="#000" stroke-width=".001">${lines.join('')}</g></svg>`);
+    const lines = Array.from(
+      { length: 20_000 },
+      (_, i) => `<path data-name="a-rather-long-name-of-a-channel-${i}" d="M1 ${1 + i * 0.01}h5"/>`,
+    );
+    put(
+      'many.svg',
+      `<svg xmlns="http://www.w3.org/2000/svg" width="40mm" height="220mm" viewBox="0 0 40 220"><g fill="none" stroke="#000" stroke-width=".001">${lines.join('')}</g></svg>`,
+    );
     const { out } = await rillcheck('draft', 'many.svg', '-r', '-');
     expect(Buffer.byteLength(out)).toBeLessThan(1_000_000);
     expect(out).toContain('too many to list here');

@@ -60,7 +60,15 @@ describe('rillcheck pump', () => {
     const result = v.parse(resultSchema, JSON.parse(out));
     if (!('pump' in result)) throw new Error('no pump part');
     expect(result.pump?.targets).toMatchObject([
-      { channel: 'lane', reach: 'lane', quantity: 'wall_shear', at: 'mean', wanted: 0.5, unit: 'Pa', by: 'in' },
+      {
+        channel: 'lane',
+        reach: 'lane',
+        quantity: 'wall_shear',
+        at: 'mean',
+        wanted: 0.5,
+        unit: 'Pa',
+        by: 'in',
+      },
     ]);
     const [setting] = result.pump?.settings ?? [];
     expect(setting.supply_pressure_pa).toBeGreaterThan(setting.pressure_pa ?? Number.NaN);
@@ -78,7 +86,9 @@ describe('rillcheck pump', () => {
     const [finding] = findings.filter(({ rule }: { rule: string }) => rule === 'pump-limit');
     expect(finding).toMatchObject({ severity: 'blocker', limit: 1000, unit: 'Pa', names: ['in', 'lane'] });
     expect(finding.measured).toBe(pump.settings[0].supply_pressure_pa);
-    expect(finding.message).toMatch(/^the pump at in would have to hold .* more than the 1 kPa that it can to reach 0\.5 Pa of wall_shear \(mean\) in lane$/);
+    expect(finding.message).toMatch(
+      /^the pump at in would have to hold .* more than the 1 kPa that it can to reach 0\.5 Pa of wall_shear \(mean\) in lane$/,
+    );
     const share = 1000 / pump.settings[0].supply_pressure_pa;
     expect(finding.fix).toContain(`wall_shear of lane is ${Number((0.5 * share).toPrecision(4))} Pa`);
   });
@@ -95,7 +105,14 @@ describe('rillcheck pump', () => {
     const { pages } = await readPdf(new Uint8Array(readFileSync(join(folder, 'out/chip.pdf'))));
     const page = pages.find(({ texts }) => texts.some(({ text }) => text === 'Pump settings'));
     const texts = page?.texts.map(({ text }) => text) ?? [];
-    for (const text of ['Targets', 'Settings', 'Setting against target', 'lane: wall shear (mean) by in', 'window of lane', 'wall shear, Pa'])
+    for (const text of [
+      'Targets',
+      'Settings',
+      'Setting against target',
+      'lane: wall shear (mean) by in',
+      'window of lane',
+      'wall shear, Pa',
+    ])
       expect(texts).toContain(text);
     const [curve] = texts.filter((text) => text.startsWith('pressure at the pump'));
     expect(curve).toBe('pressure at the pump, kPa');
@@ -118,7 +135,10 @@ describe('rillcheck pump', () => {
     const range = result.cases[1].pump?.settings[0].range;
     const setting = result.cases[1].pump?.settings[0];
     // the middle of the settings, so of the flows: 2 mm³ in 20 s and in 40 s
-    expect(setting?.flow_m3_s).toBeCloseTo(((range?.flow_min_m3_s ?? 0) + (range?.flow_max_m3_s ?? 0)) / 2, 18);
+    expect(setting?.flow_m3_s).toBeCloseTo(
+      ((range?.flow_min_m3_s ?? 0) + (range?.flow_max_m3_s ?? 0)) / 2,
+      18,
+    );
     const { pages } = await readPdf(new Uint8Array(readFileSync(join(folder, 'out/chip.pdf'))));
     const texts = pages.flatMap((page) => page.texts.map(({ text }) => text));
     expect(pages[0].texts.map(({ text }) => text)).toContain('Cases compared');
@@ -136,9 +156,13 @@ describe('rillcheck pump', () => {
     put('chip.svg', CHIP);
     const none = await rillcheck('pump', 'chip.svg');
     expect(none).toMatchObject({ code: 2, out: '' });
-    expect(none.err).toMatch(/^rillcheck: chip\.run\.yaml: there is no such run sheet; pump needs one with targets[^\n]*\n$/);
+    expect(none.err).toMatch(
+      /^rillcheck: chip\.run\.yaml: there is no such run sheet; pump needs one with targets[^\n]*\n$/,
+    );
     put('chip.run.yaml', 'depth: 100 um\n');
-    expect((await rillcheck('pump', 'chip.svg')).err).toMatch(/^rillcheck: chip\.run\.yaml: targets: there are none/);
+    expect((await rillcheck('pump', 'chip.svg')).err).toMatch(
+      /^rillcheck: chip\.run\.yaml: targets: there are none/,
+    );
     put('chip.run.yaml', SHEET.replace('by: in', 'by: inn'));
     const wrong = await rillcheck('pump', 'chip.svg');
     expect(wrong.code).toBe(2);
@@ -167,7 +191,9 @@ describe('rillcheck pump', () => {
         const grid = gridOf(chosen);
         put('grid.svg', grid.svg);
         put('grid.run.yaml', sheetOf(chosen.ports.map(portText), ''));
-        const before = JSON.parse((await rillcheck('check', 'grid.svg', '--json', '--detail', 'reaches')).out);
+        const before = JSON.parse(
+          (await rillcheck('check', 'grid.svg', '--json', '--detail', 'reaches')).out,
+        );
         const targets = targetsOf(chosen, grid, before);
         put('grid.run.yaml', sheetOf(chosen.ports.map(portText), targets.map(targetText).join('')));
         const pumped = await rillcheck('pump', 'grid.svg', '--json', '--detail', 'reaches');
@@ -181,7 +207,9 @@ describe('rillcheck pump', () => {
         const ports = chosen.ports.map((port, i) => {
           const setting = pump.settings.find((candidate: { port: string }) => candidate.port === `p${i}`);
           if (setting === undefined) return portText(port);
-          const drive = port.setByFlow ? `flow: ${setting.flow_m3_s} m^3/s` : `pressure: ${setting.supply_pressure_pa} Pa`;
+          const drive = port.setByFlow
+            ? `flow: ${setting.flow_m3_s} m^3/s`
+            : `pressure: ${setting.supply_pressure_pa} Pa`;
           return `{ ${drive}${tubingText(port)} }`;
         });
         put('grid.run.yaml', sheetOf(ports, ''));
@@ -218,7 +246,15 @@ const plannedPort: fc.Arbitrary<PlannedPort> = fc.record({
   setByFlow: fc.boolean(),
 });
 
-const QUANTITIES = ['flow', 'wall_shear mean', 'wall_shear peak', 'velocity', 'residence_time', 'port flow', 'port pressure'] as const;
+const QUANTITIES = [
+  'flow',
+  'wall_shear mean',
+  'wall_shear peak',
+  'velocity',
+  'residence_time',
+  'port flow',
+  'port pressure',
+] as const;
 
 const plan = fc.record({
   columns: fc.integer({ min: 2, max: 4 }),
@@ -250,7 +286,12 @@ interface PlannedTarget {
 }
 
 function gridOf({ columns, rows, widthsUm, depthsUm }: Plan): Grid {
-  return gridDrawing(columns, rows, (edge) => widthsUm[edge] / 1000, (edge) => depthsUm[edge]);
+  return gridDrawing(
+    columns,
+    rows,
+    (edge) => widthsUm[edge] / 1000,
+    (edge) => depthsUm[edge],
+  );
 }
 
 function tubingText({ boreUm, lengthMm }: PlannedPort): string {
@@ -289,10 +330,24 @@ function targetsOf({ targets }: Plan, { edges }: Grid, before: Document): Planne
     const common = { by: `p${by}` };
     if (quantity === 'port flow' || quantity === 'port pressure') {
       const what = quantity === 'port flow' ? 'flow' : 'pressure';
-      return { ...common, on: 'port', name: `p${by}`, quantity: what, at: null, value: factor * (what === 'flow' ? 1e-10 : 500) };
+      return {
+        ...common,
+        on: 'port',
+        name: `p${by}`,
+        quantity: what,
+        at: null,
+        value: factor * (what === 'flow' ? 1e-10 : 500),
+      };
     }
     const [kind, at = null] = quantity.split(' ');
-    const target = { ...common, on: 'channel' as const, name: edges[edge % edges.length].name, quantity: kind, at, value: 0 };
+    const target = {
+      ...common,
+      on: 'channel' as const,
+      name: edges[edge % edges.length].name,
+      quantity: kind,
+      at,
+      value: 0,
+    };
     const usual = Math.abs(valueIn(before, target));
     const fallback = { flow: 1e-10, wall_shear: 0.1, velocity: 1e-3, residence_time: 3 }[kind] ?? 1;
     const sane = usual > 1e-3 * fallback && usual < 1e3 * fallback;
@@ -306,11 +361,18 @@ function valueIn({ reaches, ports }: Document, { on, name, quantity, at }: Plann
     return (quantity === 'flow' ? port?.flow_m3_s : port?.pressure_pa) ?? Number.NaN;
   }
   const reach = reaches.find((candidate) => candidate.name === name);
-  const key = { flow: 'flow_m3_s', wall_shear: `wall_shear_floor_${at}_pa`, velocity: 'mean_velocity_m_s', residence_time: 'residence_time_s' }[quantity];
+  const key = {
+    flow: 'flow_m3_s',
+    wall_shear: `wall_shear_floor_${at}_pa`,
+    velocity: 'mean_velocity_m_s',
+    residence_time: 'residence_time_s',
+  }[quantity];
   return reach?.[key ?? ''] ?? Number.NaN;
 }
 
 function targetText({ on, name, quantity, at, value, by }: PlannedTarget): string {
-  const unit = { flow: 'm^3/s', wall_shear: 'Pa', velocity: 'm/s', residence_time: 's', pressure: 'Pa' }[quantity];
+  const unit = { flow: 'm^3/s', wall_shear: 'Pa', velocity: 'm/s', residence_time: 's', pressure: 'Pa' }[
+    quantity
+  ];
   return `  - { ${on}: ${name}, ${quantity}: ${value} ${unit}${at === null ? '' : `, at: ${at}`}, by: ${by} }\n`;
 }

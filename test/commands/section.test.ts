@@ -36,7 +36,16 @@ describe('rillcheck section', () => {
   });
 
   it('says when the flow may not be laminar, when it develops, and what an isotropic etch is computed as', async () => {
-    const fast = await section('--width', '1 mm', '--depth', '1 mm', '--length', '5 mm', '--flow', '200 mL/min');
+    const fast = await section(
+      '--width',
+      '1 mm',
+      '--depth',
+      '1 mm',
+      '--length',
+      '5 mm',
+      '--flow',
+      '200 mL/min',
+    );
     expect(fast.out).toContain('Above a Reynolds number of 1000');
     expect(fast.out).toContain('develops over more than a tenth');
     const etched = await section(...SIZE, '--flow', '1 uL/min', '--profile', 'isotropic');
@@ -49,14 +58,27 @@ describe('rillcheck section', () => {
       [...SIZE, '--flow', '1 uL/min', '--pressure', '1 kPa'],
       'needs exactly one of --flow, --pressure and --wall-shear (--flow and --pressure are given)',
     ],
-    [['--width', '500', ...SIZE.slice(2), '--flow', '1 uL/min'], '--width: "500" has no unit; write for example "500 um"'],
+    [
+      ['--width', '500', ...SIZE.slice(2), '--flow', '1 uL/min'],
+      '--width: "500" has no unit; write for example "500 um"',
+    ],
     [['--width', '-5 um', ...SIZE.slice(2), '--flow', '1 uL/min'], '--width: "-5 um" is not above 0'],
     [[...SIZE, '--flow', '1 kPa'], '--flow: "1 kPa" is a pressure; a flow is needed'],
     [[...SIZE, '--flow', '1 uL/min', '--viscosity', '1 mPa s'], '--density: is needed with --viscosity'],
     [[...SIZE, '--flow', '1 uL/min', '--density', '1 g/mL'], '--viscosity: is needed with --density'],
     [[...SIZE, '--flow', '1 uL/min', '--temperature', '200 degC'], '--temperature: '],
     [
-      [...SIZE, '--flow', '1 uL/min', '--viscosity', '1 mPa s', '--density', '1 g/mL', '--temperature', '30 degC'],
+      [
+        ...SIZE,
+        '--flow',
+        '1 uL/min',
+        '--viscosity',
+        '1 mPa s',
+        '--density',
+        '1 g/mL',
+        '--temperature',
+        '30 degC',
+      ],
       '--temperature: says nothing about a fluid given by viscosity and density',
     ],
     [SIZE.slice(2), "required option '--width <LENGTH>' not specified"],
@@ -72,7 +94,9 @@ describe('rillcheck section', () => {
     const examples = help.out.split('\n').filter((line) => line.startsWith('  rillcheck section'));
     expect(examples.length).toBeGreaterThanOrEqual(3);
     for (const example of examples) {
-      const words = [...example.matchAll(/"([^"]*)"|(\S+)/g)].map(([, quoted, plain]) => quoted ?? plain).slice(2);
+      const words = [...example.matchAll(/"([^"]*)"|(\S+)/g)]
+        .map(([, quoted, plain]) => quoted ?? plain)
+        .slice(2);
       expect((await section(...words)).code).toBe(0);
     }
   });

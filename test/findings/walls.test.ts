@@ -130,7 +130,7 @@ describe('walls between channels', () => {
   it('says nothing about legs that are near each other only because the turn is short', () => {
     // 4 × (0.2 + 0.04) = 0.96: from wall to wall over the turn it is never farther than that
     expect(
-      wallsOf([{ name: 'hook', widthMm: 0.2, lines: [[0, 0, 10, 0, 10, 0.23, 9.64, 0.23, 9.64, 5]] }]),
+      wallsOf([{ name: 'hook', widthMm: 0.2, lines: [[0, 0, 10, 0, 10, 0.23, 9.72, 0.23, 9.72, 5]] }]),
     ).toEqual([]);
     expect(
       wallsOf([{ name: 'hook', widthMm: 0.2, lines: [[0, 0, 10, 0, 10, 0.23, 9.5, 0.23, 9.5, 5]] }]).map(

@@ -123,7 +123,7 @@ describe('stroke widths follow the full transform', () => {
     ['transform="scale(1 1.0000005)"', 0.2],
     ['transform="scale(1 1.00001)"', null],
     ['transform="skewX(10)"', null],
-    ['transform="scale(3)" vector-effect="non-scaling-stroke"', 0.2],
+    ['transform="scale(3)" vector-effect="non-scaling-stroke"', 0.2 * (25.4 / 96)],
   ])('%s', (attributes, width) => {
     const stroke = strokeOf(`<path ${S} stroke-width="0.2" ${attributes} d="M0 0h9"/>`);
     if (width === null) expect(stroke.width).toBeNull();

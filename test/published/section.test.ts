@@ -19,7 +19,15 @@ async function section(...args: string[]) {
 }
 
 function duct(widthUm: number, depthUm: number, lengthMm: number, ...rest: string[]) {
-  return section('--width', `${widthUm} um`, '--depth', `${depthUm} um`, '--length', `${lengthMm} mm`, ...rest);
+  return section(
+    '--width',
+    `${widthUm} um`,
+    '--depth',
+    `${depthUm} um`,
+    '--length',
+    `${lengthMm} mm`,
+    ...rest,
+  );
 }
 
 describe('published values through rillcheck section', () => {

@@ -141,10 +141,7 @@ describe('findSettings', () => {
       const limit = settingFor('wall_shear: 0.2 Pa');
       const network = networkFrom(
         BRIDGE,
-        sheet(
-          'wall_shear: { min: 0.1 Pa, max: 2 Pa }',
-          `pump_limits: { a: { max_pressure: ${limit} Pa } }`,
-        ),
+        sheet('wall_shear: { min: 0.1 Pa, max: 2 Pa }', `pump_limits: { a: { max_pressure: ${limit} Pa } }`),
       );
       const [{ response, reach, range }] = findSettings(network).targets;
       expect(rel(response.setting, (low + limit) / 2)).toBeLessThan(1e-9);
@@ -176,7 +173,10 @@ describe('findSettings', () => {
     it.each([
       [
         'two targets by one port',
-        bridge(PORTS, '  - { channel: out-1, flow: 1 uL/min, by: a }\n  - { channel: out-2, flow: 1 uL/min, by: a }'),
+        bridge(
+          PORTS,
+          '  - { channel: out-1, flow: 1 uL/min, by: a }\n  - { channel: out-2, flow: 1 uL/min, by: a }',
+        ),
         /^chip\.run\.yaml:9: targets\[1\]: is by "a", as targets\[0\] is: one port can be set to meet one target/,
       ],
       [
@@ -194,7 +194,10 @@ describe('findSettings', () => {
       ],
       [
         'a chip in which nothing can flow',
-        bridge('  a: { pressure: 1 kPa }\n  b: sealed\n  c: sealed', '  - { channel: in-1, flow: 1 uL/min, by: a }'),
+        bridge(
+          '  a: { pressure: 1 kPa }\n  b: sealed\n  c: sealed',
+          '  - { channel: in-1, flow: 1 uL/min, by: a }',
+        ),
         /nothing can flow whatever "a" does: no other port that it is connected with holds a pressure/,
       ],
       [
@@ -250,10 +253,7 @@ describe('findSettings', () => {
     });
 
     it('a channel of several reaches without reach:, listing them, and takes the one named', () => {
-      const svg = drawing(
-        { main: 'M5 10H50', side: 'M25 10V30' },
-        { a: [5, 10], b: [50, 10], c: [25, 30] },
-      );
+      const svg = drawing({ main: 'M5 10H50', side: 'M25 10V30' }, { a: [5, 10], b: [50, 10], c: [25, 30] });
       const sheet = (reach: string): string =>
         `depth: 80 um\nports: { a: open, b: open, c: open }\ntargets:\n  - { channel: main, ${reach} flow: 1 uL/min, by: a }`;
       expect(() => findSettings(networkFrom(svg, sheet('')))).toThrow(
@@ -324,8 +324,7 @@ function denseBridge(
   foundFlow: Float64Array,
 ): { pressure: number; flow: number } {
   const { reach, tubing } = nominalResistances(network);
-  const r = (name: string): number =>
-    [0, 1, 2, 3, 4].map((i) => network.reachName(i)).indexOf(name);
+  const r = (name: string): number => [0, 1, 2, 3, 4].map((i) => network.reachName(i)).indexOf(name);
   const g = (name: string): number => 1 / reach[r(name)];
   const { viscosityPaS } = network.chip.fluid;
   const form = ductForm(0.2e-3, 80e-6);
@@ -342,13 +341,54 @@ function denseBridge(
     right.push(value);
   };
   const supplyD = -1000;
-  row([[A, 1 / tubing[0] + g('in-1')], [P, -1 / tubing[0]], [J1, -g('in-1')]], 0);
-  row([[B, g('in-2')], [J2, -g('in-2')], [Q, -1]], 0);
-  row([[J1, g('in-1') + g('bridge') + g('out-1')], [A, -g('in-1')], [J2, -g('bridge')]], 0);
-  row([[J2, g('in-2') + g('bridge') + g('out-2')], [B, -g('in-2')], [J1, -g('bridge')], [D, -g('out-2')]], 0);
-  row([[D, g('out-2') + 1 / tubing[3]], [J2, -g('out-2')]], supplyD / tubing[3]);
+  row(
+    [
+      [A, 1 / tubing[0] + g('in-1')],
+      [P, -1 / tubing[0]],
+      [J1, -g('in-1')],
+    ],
+    0,
+  );
+  row(
+    [
+      [B, g('in-2')],
+      [J2, -g('in-2')],
+      [Q, -1],
+    ],
+    0,
+  );
+  row(
+    [
+      [J1, g('in-1') + g('bridge') + g('out-1')],
+      [A, -g('in-1')],
+      [J2, -g('bridge')],
+    ],
+    0,
+  );
+  row(
+    [
+      [J2, g('in-2') + g('bridge') + g('out-2')],
+      [B, -g('in-2')],
+      [J1, -g('bridge')],
+      [D, -g('out-2')],
+    ],
+    0,
+  );
+  row(
+    [
+      [D, g('out-2') + 1 / tubing[3]],
+      [J2, -g('out-2')],
+    ],
+    supplyD / tubing[3],
+  );
   row([[J1, g('out-1')]], 7e-9 / 60);
-  row([[J1, g('bridge')], [J2, -g('bridge')]], sign * bridgeFlow);
+  row(
+    [
+      [J1, g('bridge')],
+      [J2, -g('bridge')],
+    ],
+    sign * bridgeFlow,
+  );
   const scaled = rows.map((line) => line.map((entry, column) => entry * (column === Q ? 1e-12 : 1)));
   const sizes = scaled.map((line) => Math.max(...line.map(Math.abs)));
   const x = lusolve(

@@ -12,7 +12,7 @@ export function writeRunSheet({ paper, report, one }: PageContext): void {
   }
   paper.paragraph(
     section,
-    `${sheet.file}, SHA-256 ${report.result.run_sheet?.sha256 ?? sheet.sha256}`,
+    `${report.result.run_sheet?.file ?? ''}, SHA-256 ${report.result.run_sheet?.sha256 ?? ''}`,
     SMALL,
   );
   const lines = sheet.text.replace(/\r?\n$/, '').split(/\r?\n/);

@@ -52,7 +52,7 @@ function method({ seed, draws }: Spread): string {
     `Sample: ${draws} draws of a shuffled Halton sequence (A. B. Owen, arXiv:1706.02808), seed ${seed}; each is the whole chip computed anew. Draw i depends on the seed and i alone. ` +
     'A tolerance is 2 sigma of a normal distribution, or half the width of a uniform one where it is a hard limit. A depth is common to its layer and independent between layers; `width` is one bias of the whole mask, ' +
     '`width_own` a part of its own for each channel. Joins and duct lengths stay as drawn. A response counts as not linear where the two standard deviations differ by more than 5 %, or the mean lies more than a tenth ' +
-    'of one off the nominal value, beyond the error of the sample. Limits of the drawing itself (widths, walls, margins) are judged on the drawing and are no part of the yield. ' +
+    'of one off the nominal value, beyond the error of the sample. No pressure may fall below −95 kPa, limit or not. Limits of the drawing itself (widths, walls, margins) are judged on the drawing and are no part of the yield. ' +
     'The interval of the yield is Wilson’s at 95 %; it says how well the sample knows the yield, not how well the tolerances are known.'
   );
 }
@@ -166,11 +166,14 @@ function byRoom(outputs: readonly SpreadOutput[]): readonly SpreadOutput[] {
       min === null ? Number.POSITIVE_INFINITY : (nominal - min) / sd,
       max === null ? Number.POSITIVE_INFINITY : (max - nominal) / sd,
     );
-  return outputs
-    .map((output, i) => ({ output, i, room: room(output) }))
-    .filter(({ output, room: left }) => output.hasWindow && output.sd > 0 && !Number.isNaN(left))
-    .sort((a, b) => (a.room < b.room ? -1 : a.room > b.room ? 1 : a.i - b.i))
-    .map(({ output }) => output);
+  return (
+    outputs
+      // rounded, so that equal lanes keep their order
+      .map((output, i) => ({ output, i, room: Number(room(output).toPrecision(9)) }))
+      .filter(({ output, room: left }) => output.hasWindow && output.sd > 0 && !Number.isNaN(left))
+      .sort((a, b) => (a.room < b.room ? -1 : a.room > b.room ? 1 : a.i - b.i))
+      .map(({ output }) => output)
+  );
 }
 
 function paintDistribution(
@@ -278,7 +281,7 @@ function writeNumbers(paper: Paper, section: Element, spread: Spread, show: Show
       { head: 'linear', align: 'left', width: 'fit' },
       { head: 'asked', align: 'left', width: 'fit' },
       { head: 'kept', align: 'right', width: 'fit' },
-      { head: 'main causes', align: 'left', width: 'share' },
+      { head: 'main causes', align: 'left', width: 'wrap' },
     ],
     rows,
     { size: 6.5 },
