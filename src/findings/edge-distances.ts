@@ -2,7 +2,7 @@ import Flatten from '@flatten-js/core';
 import Flatbush from 'flatbush';
 import type { ChipEdge } from '../chip/types.ts';
 import { segmentDistance } from '../geometry/segment.ts';
-import type { Line } from './closest.ts';
+import { closestPoints, type Line } from './closest.ts';
 import type { FindingContext } from './context.ts';
 import { lineOf, outlineOf } from './painted.ts';
 import { isBelow } from './rule.ts';
@@ -31,6 +31,7 @@ export function findEdgeFaults(context: FindingContext, edge: ChipEdge, marginMm
   const { chip, network } = context;
   const { pieces } = network.trace.near;
   const outline = toOutline(edge.rings);
+  if (outline.sides.length === 0) return [];
   const faults: EdgeFault[] = [];
 
   for (const port of chip.ports) {
@@ -51,12 +52,12 @@ export function findEdgeFaults(context: FindingContext, edge: ChipEdge, marginMm
         near = nearOfPiece(i);
         inside = isInside(outline.rings, pieces.x2[i], pieces.y2[i]);
       } else if (!inside) {
-        near = measure(outline, lineOf(pieces, i), pieces.half[i]);
+        near = farOutside(i);
       }
       const isAtFault = near !== null && isFault(near.gapMm, marginMm);
       if (near !== null && isAtFault) worst = worst === null ? near : worseOf(worst, near);
       // Two pieces that come near the edge and meet far from it are two places.
-      if (worst !== null && !(isAtFault && isFault(gapAtEnd(i), marginMm))) {
+      if (worst !== null && !(isAtFault && (!inside || isFault(gapAtEnd(i), marginMm)))) {
         faults.push(toFault(name, false, worst));
         worst = null;
       }
@@ -64,6 +65,17 @@ export function findEdgeFaults(context: FindingContext, edge: ChipEdge, marginMm
     if (worst !== null) faults.push(toFault(name, false, worst));
   }
   return faults;
+
+  /** A piece wholly beyond the edge and far from it: judged by its farther end, so that a whole drawing there costs little. */
+  function farOutside(i: number): Near {
+    const half = pieces.half[i];
+    const start = beyond(outline, pieces.x1[i], pieces.y1[i], half);
+    const end = beyond(outline, pieces.x2[i], pieces.y2[i], half);
+    if (Math.abs(start.gapMm - end.gapMm) > ROUNDING_MM) return worseOf(start, end);
+    const x = (pieces.x1[i] + pieces.x2[i]) / 2;
+    const y = (pieces.y1[i] + pieces.y2[i]) / 2;
+    return worseOf(start, { ...beyond(outline, x, y, half), isEven: true });
+  }
 
   function gapAtEnd(i: number): number {
     return measure(outline, [pieces.x2[i], pieces.y2[i], pieces.x2[i], pieces.y2[i]], pieces.half[i]).gapMm;
@@ -169,6 +181,18 @@ function measure({ polygon, rings }: Outline, line: Line, radius: number): Near 
     const yMm = y + share * (edgeY - y);
     return { gapMm: gapMm - radius, xMm, yMm, mark: [xMm, yMm, edgeX, edgeY], isEven: isEvenNear };
   }
+}
+
+/** At most this many sides of the edge are looked at for a point far beyond it: those whose boxes are nearest. */
+const SIDES_TRIED = 32;
+
+function beyond({ index, sides }: Outline, x: number, y: number, radius: number): Near {
+  let best = closestPoints([x, y, x, y], sides[0]);
+  for (const k of index.neighbors(x, y, SIDES_TRIED)) {
+    const closest = closestPoints([x, y, x, y], sides[k]);
+    if (closest.distanceMm < best.distanceMm) best = closest;
+  }
+  return { gapMm: -best.distanceMm - radius, xMm: x, yMm: y, mark: [x, y, best.x2, best.y2], isEven: false };
 }
 
 /** Even-odd: whether a ray to the right crosses the rings an odd number of times. */

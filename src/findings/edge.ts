@@ -60,7 +60,7 @@ function outside(fault: EdgeFault): Finding {
   const { name, isHole, gapMm } = fault;
   return toFinding('outside-chip', 'blocker', {
     message: `${isHole ? 'the well ' : ''}${name} reaches ${distanceText(-gapMm)} beyond the chip edge`,
-    fix: `move ${name} ${moveText(-gapMm)} or more into the chip, or draw the chip edge round it`,
+    fix: `move ${name} ${moveText(-gapMm)} or more into the chip, or draw the chip edge round it; if it is no part of this chip, name the chip's edge under outline: in the run sheet (only what lies inside is read), or ${name} under ignore:`,
     ...placeOf(fault),
     measure: { value: gapMm / 1e3, limit: 0, unit: 'm' },
   });

@@ -45,7 +45,7 @@ function strayChannels(context: FindingContext, flow: FlowState): Finding[] {
         message: `${listText(channels)} ${verb} ${meets}: nothing known flows there`,
         fix:
           ports.length === 0
-            ? `join ${channels[0]} to the channel or well it was meant to meet, or take it out of the drawing`
+            ? `join ${channels[0]} to the channel or well it was meant to meet, or take it out of the drawing; if it is no channel, name it or its layer under ignore: in the run sheet`
             : `give ${ports.length === 1 ? ports[0] : `one of ${listText(ports, 4)}`} a pressure, flow or head, or set it to open; or join ${channels[0]} to a driven part of the chip`,
         at: middleOfReach(network, reaches[0]),
         names: [...new Set([...channels, ...ports])],

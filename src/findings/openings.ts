@@ -4,7 +4,7 @@ import { oncePerContext } from './context.ts';
 /** A narrower channel that opens into a wider reach at one of the reach's ends. */
 export interface Opening {
   readonly feeder: number;
-  /** On the wide channel's axis (within a quarter of its width), or from its side or edge. */
+  /** Along the wide channel's axis and within a quarter of its width of it; or from its side or edge. */
   readonly side: 'axis' | 'edge';
 }
 

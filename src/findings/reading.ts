@@ -94,7 +94,7 @@ function missingDepths(faults: readonly FaultOf<'missing-depth'>[]): Finding[] {
 function disguisedStroke({ channel, by, xMm, yMm }: FaultOf<'disguised-stroke'>): Finding {
   return toFinding('disguised-stroke', 'caution', {
     message: `${channel} carries ${by}, so it looks other than it is read: the whole stroke counts as etched`,
-    fix: `take ${by} off ${channel}, or take the stroke out of the drawing if it is not to be etched`,
+    fix: `take ${by} off ${channel}, or name it under ignore: in the run sheet if it is not to be etched`,
     at: { xMm, yMm },
     names: [channel],
   });
@@ -108,7 +108,7 @@ function unsetPorts({ chip }: FindingContext): Finding[] {
         message: `port ${name} (${distanceText(2 * radiusMm)} hole) has no condition; it was computed as sealed`,
         fix:
           drawnName === null
-            ? 'give the circle a name in the drawing and its pressure, flow or head in the run sheet (or open, or sealed); name it under ignore: if it is no port'
+            ? 'give the circle a name in the drawing and its pressure, flow or head in the run sheet (or open, or sealed); name it or its layer under ignore: if it is no port, or name the layer of the ports under ports_layer:'
             : `write in the run sheet ports: { ${keyText(name)}: { pressure: 10 kPa } } (or flow or head, or just open or sealed)`,
         at: { xMm, yMm },
         names: [name],

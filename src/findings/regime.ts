@@ -97,7 +97,7 @@ function developingFlow(context: FindingContext): Finding[] {
     const cause =
       opening === null
         ? `the flow that enters ${name} at ${start} needs ${show.text('length', developingM)} to develop`
-        : `${network.reachName(opening.feeder)} opens into ${name} ${opening.side === 'axis' ? 'on its axis' : 'from its side'} at ${start}, and its flow needs ${show.text('length', developingM)} to spread`;
+        : `${network.reachName(opening.feeder)} opens into ${name} ${opening.side === 'axis' ? 'on its axis' : 'off its axis'} at ${start}, and its flow needs ${show.text('length', developingM)} to spread`;
     const remedy =
       opening !== null
         ? ', lead the flow in through a taper or several feeders'

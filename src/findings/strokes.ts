@@ -20,7 +20,7 @@ export const strokeRules: readonly Rule[] = [
             message: `${pair} are drawn over each other along ${distanceText(lengthMm)}${offset}: they would be one duct, but count as two; more than ${distanceText(limitMm)} (twice the wider width) is no joint`,
             fix: same
               ? `draw that part of ${one} once`
-              : `delete the part of ${two} that runs along ${one}, or move it clear if it is meant to be a channel of its own`,
+              : `delete the part of ${two} that runs along ${one}, or move it clear if it is meant to be a channel of its own; in the run sheet, name it under ignore: if it is no channel, or give its layer a plane: of its own if it lies in another sheet`,
             at: { xMm, yMm },
             names: same ? [one] : [two, one],
             measure: { value: lengthMm / 1e3, limit: limitMm / 1e3, unit: 'm' },

@@ -88,12 +88,13 @@ function toNetwork(
   const nodeKind = new Uint8Array(index.count);
   const firstDuct = new Int32Array(index.count).fill(-1);
   const changes = new Uint8Array(index.count);
+  const meet = (node: number, channel: number): void => {
+    if (firstDuct[node] < 0) firstDuct[node] = channel;
+    else if (firstDuct[node] !== channel && !isSameDuct(chip, firstDuct[node], channel)) changes[node] = 1;
+  };
   for (let r = 0; r < reaches.count; r++) {
-    for (const node of [reachFrom[r], reachTo[r]]) {
-      const channel = reaches.channel[r];
-      if (firstDuct[node] < 0) firstDuct[node] = channel;
-      else if (!isSameDuct(chip, firstDuct[node], channel)) changes[node] = 1;
-    }
+    meet(reachFrom[r], reaches.channel[r]);
+    meet(reachTo[r], reaches.channel[r]);
   }
   const nodePort = new Int32Array(index.count).fill(-1);
   const portNode = new Int32Array(chip.ports.length);
@@ -135,13 +136,13 @@ function toNetwork(
     joints: tally.summaries(),
     firstSegment,
     segmentCount: segments.count,
-    segmentReach: Int32Array.from(segments.reach),
-    segmentX1: Float64Array.from(segments.x1),
-    segmentY1: Float64Array.from(segments.y1),
-    segmentX2: Float64Array.from(segments.x2),
-    segmentY2: Float64Array.from(segments.y2),
-    segmentDuctMm: Float64Array.from(segments.ductMm),
-    segmentBendRadiusMm: Float64Array.from(segments.bendRadius),
+    segmentReach: new Int32Array(segments.reach),
+    segmentX1: new Float64Array(segments.x1),
+    segmentY1: new Float64Array(segments.y1),
+    segmentX2: new Float64Array(segments.x2),
+    segmentY2: new Float64Array(segments.y2),
+    segmentDuctMm: new Float64Array(segments.ductMm),
+    segmentBendRadiusMm: new Float64Array(segments.bendRadius),
     trace: toTrace(),
     nodeName: names,
     reachName: (reach) => nameReach(chip, reachColumns, reach),
@@ -153,9 +154,12 @@ function toNetwork(
     const firstArc = new Int32Array(n + 1);
     for (const c of arcs.centreline) firstArc[c + 1]++;
     for (let c = 0; c < n; c++) firstArc[c + 1] += firstArc[c];
-    const toNode = (root: number): number => index.ofRoot[root] ?? -1;
-    const arcNodeFrom = Int32Array.from(arcs.nodeFrom, toNode);
-    const arcNodeTo = Int32Array.from(arcs.nodeTo, toNode);
+    const arcNodeFrom = new Int32Array(arcs.count);
+    const arcNodeTo = new Int32Array(arcs.count);
+    for (let a = 0; a < arcs.count; a++) {
+      arcNodeFrom[a] = index.ofRoot[arcs.nodeFrom[a]];
+      arcNodeTo[a] = index.ofRoot[arcs.nodeTo[a]];
+    }
     const endNode = new Int32Array(2 * n).fill(-1);
     const endFate: EndFate[] = new Array(2 * n);
     for (let c = 0; c < n; c++) {
@@ -170,9 +174,9 @@ function toNetwork(
     return {
       near: draft.near,
       arcCount: arcs.count,
-      arcCentreline: Int32Array.from(arcs.centreline),
-      arcFrom: Float64Array.from(arcs.from),
-      arcTo: Float64Array.from(arcs.to),
+      arcCentreline: new Int32Array(arcs.centreline),
+      arcFrom: new Float64Array(arcs.from),
+      arcTo: new Float64Array(arcs.to),
       arcReach: reaches.arcReach,
       arcReversed: reaches.arcReversed,
       arcNodeFrom,
@@ -276,17 +280,16 @@ function placeNodes(draft: Draft, arcs: Arcs, index: NodeNumbers, nodePort: Int3
     nodeY[node] = draft.chip.ports[nodePort[node]].yMm;
   }
   const at = { x: 0, y: 0 };
+  const place = (root: number, c: number, s: number): void => {
+    const node = index.ofRoot[root];
+    if (node < 0 || !Number.isNaN(nodeX[node])) return;
+    pointAt(draft, c, s, at);
+    nodeX[node] = at.x;
+    nodeY[node] = at.y;
+  };
   for (let a = 0; a < arcs.count; a++) {
-    for (const [root, s] of [
-      [arcs.nodeFrom[a], arcs.from[a]],
-      [arcs.nodeTo[a], arcs.to[a]],
-    ]) {
-      const node = index.ofRoot[root];
-      if (node < 0 || !Number.isNaN(nodeX[node])) continue;
-      pointAt(draft, arcs.centreline[a], s, at);
-      nodeX[node] = at.x;
-      nodeY[node] = at.y;
-    }
+    place(arcs.nodeFrom[a], arcs.centreline[a], arcs.from[a]);
+    place(arcs.nodeTo[a], arcs.centreline[a], arcs.to[a]);
   }
   return { nodeX, nodeY };
 }
@@ -300,18 +303,25 @@ function fateOf(draft: Draft, kept: Kept, end: number): EndFate {
 
 function toPlaces(stops: Stops, byNode: { first: Int32Array; stop: Int32Array }, index: NodeNumbers) {
   const firstPlace = new Int32Array(index.count + 1);
-  const order: number[] = [];
+  const placeCentreline = new Int32Array(stops.count);
+  const placeFrom = new Float64Array(stops.count);
+  const placeTo = new Float64Array(stops.count);
+  let count = 0;
   for (let node = 0; node < index.count; node++) {
     const root = index.rootOf[node];
     if (root + 1 < byNode.first.length) {
-      for (let k = byNode.first[root]; k < byNode.first[root + 1]; k++) order.push(byNode.stop[k]);
+      for (let k = byNode.first[root]; k < byNode.first[root + 1]; k++, count++) {
+        placeCentreline[count] = stops.centreline[byNode.stop[k]];
+        placeFrom[count] = stops.from[byNode.stop[k]];
+        placeTo[count] = stops.to[byNode.stop[k]];
+      }
     }
-    firstPlace[node + 1] = order.length;
+    firstPlace[node + 1] = count;
   }
   return {
     firstPlace,
-    placeCentreline: Int32Array.from(order, (stop) => stops.centreline[stop]),
-    placeFrom: Float64Array.from(order, (stop) => stops.from[stop]),
-    placeTo: Float64Array.from(order, (stop) => stops.to[stop]),
+    placeCentreline: placeCentreline.subarray(0, count),
+    placeFrom: placeFrom.subarray(0, count),
+    placeTo: placeTo.subarray(0, count),
   };
 }

@@ -32,19 +32,21 @@ export interface JointSummary {
 
 /** Adds joints up by kind while they are found. */
 export class JointTally {
-  private readonly byKind = new Map<JointKind, JointSummary>();
+  private readonly byKind = new Map<
+    JointKind,
+    { -readonly [Key in keyof JointSummary]: JointSummary[Key] }
+  >();
 
-  add(kind: JointKind, addedMm: number, boundMm: number, xMm: number, yMm: number, count = 1): void {
+  add(kind: JointKind, addedMm: number, boundMm: number, xMm: number, yMm: number): void {
     const known = this.byKind.get(kind);
-    this.byKind.set(kind, {
-      kind,
-      computed: !kind.endsWith('not computed') && kind !== 'entry from a well',
-      count: (known?.count ?? 0) + count,
-      addedMm: (known?.addedMm ?? 0) + addedMm,
-      boundMm: Math.max(known?.boundMm ?? 0, boundMm),
-      xMm: known?.xMm ?? xMm,
-      yMm: known?.yMm ?? yMm,
-    });
+    if (known === undefined) {
+      const computed = !kind.endsWith('not computed') && kind !== 'entry from a well';
+      this.byKind.set(kind, { kind, computed, count: 1, addedMm, boundMm, xMm, yMm });
+      return;
+    }
+    known.count++;
+    known.addedMm += addedMm;
+    known.boundMm = Math.max(known.boundMm, boundMm);
   }
 
   summaries(): JointSummary[] {

@@ -71,21 +71,23 @@ function isThrough(arms: readonly Arm[]): boolean {
   return arms.length === 2 && arms[0].channel === arms[1].channel;
 }
 
+/** Scratch points of toArm, which is asked for every arm of the chip. */
+const HERE = { x: 0, y: 0 };
+const THERE = { x: 0, y: 0 };
+
 function toArm(draft: Draft, arcs: Arcs, side: number): Arm {
   const arc = side >> 1;
   const c = arcs.centreline[arc];
   const atFrom = (side & 1) === 0;
-  const here = { x: 0, y: 0 };
-  const there = { x: 0, y: 0 };
   const position = atFrom ? arcs.from[arc] : arcs.to[arc];
-  pointAt(draft, c, position, here);
-  pointAt(draft, c, nextVertex(draft, arcs, arc, position, atFrom), there);
-  const length = Math.hypot(there.x - here.x, there.y - here.y);
+  pointAt(draft, c, position, HERE);
+  pointAt(draft, c, nextVertex(draft, arcs, arc, position, atFrom), THERE);
+  const length = Math.hypot(THERE.x - HERE.x, THERE.y - HERE.y);
   return {
     side,
     channel: draft.chip.channels[draft.pieces.centrelineChannel[c]],
-    dx: (there.x - here.x) / length,
-    dy: (there.y - here.y) / length,
+    dx: (THERE.x - HERE.x) / length,
+    dy: (THERE.y - HERE.y) / length,
   };
 }
 

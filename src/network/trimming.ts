@@ -189,7 +189,7 @@ function uniteEqualStrips(draft: Draft, stops: Stops, kept: Kept, byNode: NodeSt
   for (let node = draft.portCount; node + 1 < byNode.first.length; node++) {
     const begin = byNode.first[node];
     const end = byNode.first[node + 1];
-    if (end - begin < 2) continue;
+    if (end - begin < 2 || countEnds(draft, stops, kept, byNode, begin, end) < 2) continue;
     const heads = new Map<string, number>();
     for (let m = begin; m < end; m++) {
       const e = endAtStop(draft, stops, kept, byNode.stop[m]);
@@ -211,6 +211,19 @@ function uniteEqualStrips(draft: Draft, stops: Stops, kept: Kept, byNode: NodeSt
   }
   for (let c = 0; c < pieces.centrelineCount; c++) group[c] = find(c);
   return { group, ends: { seam } };
+}
+
+function countEnds(
+  draft: Draft,
+  stops: Stops,
+  kept: Kept,
+  byNode: NodeStops,
+  begin: number,
+  end: number,
+): number {
+  let count = 0;
+  for (let m = begin; m < end; m++) if (endAtStop(draft, stops, kept, byNode.stop[m]) >= 0) count++;
+  return count;
 }
 
 /** The end of its centreline that a stop stands at, −1 for an inner stop. */

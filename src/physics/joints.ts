@@ -247,8 +247,15 @@ function pointsOf(rows: readonly JointRow[]): readonly RatioPoint[] {
 
 function atAspect(row: JointRow, aspect: number): number {
   if (!(aspect >= 0)) throw new RangeError(`an aspect w/h lies between 0 and Infinity, not ${aspect}`);
-  return interpolate(ASPECT_NODES, row, aspectPlace(aspect));
+  // A chip has few aspects and many joints: the last value of each row is nearly always the one asked for.
+  const last = LAST_ASKED.get(row);
+  if (last?.aspect === aspect) return last.k;
+  const k = interpolate(ASPECT_NODES, row, aspectPlace(aspect));
+  LAST_ASKED.set(row, { aspect, k });
+  return k;
 }
+
+const LAST_ASKED = new Map<JointRow, { readonly aspect: number; readonly k: number }>();
 
 /** 0 … Infinity on 0 … 1. */
 export function aspectPlace(aspect: number): number {

@@ -166,13 +166,15 @@ const MEAN_SHIFT = 0.1;
 
 /**
  * Sample and first order agree when neither the spread nor the middle differs by more than would show in a second digit, beyond
- * three standard errors of the sample.
+ * three standard errors that the sample would have if the response were linear: it is then a sum of normal and uniform numbers,
+ * whose fourth moment is at most a normal's, so s errs by at most σ/√2n and the mean by σ/√n.
  */
-function agrees(nominal: number, linearSd: number, { count, mean, sd, sdError }: Summary): boolean | null {
+function agrees(nominal: number, linearSd: number, { count, mean, sd }: Summary): boolean | null {
   if (count < 2 || Number.isNaN(linearSd) || Number.isNaN(sd)) return null;
   if (sd === 0 && linearSd === 0) return true;
   const largest = Math.max(sd, linearSd);
-  const spreadDiffers = Math.abs(sd - linearSd) > SD_DIFFERENCE * largest + 3 * sdError;
-  const middleDiffers = Math.abs(mean - nominal) > MEAN_SHIFT * largest + (3 * sd) / Math.sqrt(count);
+  const spreadDiffers =
+    Math.abs(sd - linearSd) > SD_DIFFERENCE * largest + (3 * linearSd) / Math.sqrt(2 * count);
+  const middleDiffers = Math.abs(mean - nominal) > MEAN_SHIFT * largest + (3 * linearSd) / Math.sqrt(count);
   return !spreadDiffers && !middleDiffers;
 }

@@ -6,8 +6,6 @@ export interface Summary {
   readonly mean: number;
   /** Of the population, estimated with n − 1. */
   readonly sd: number;
-  /** Standard error of sd for independent draws, from the fourth moment; an upper bound in practice for evenly laid ones. */
-  readonly sdError: number;
   readonly p2_5: number;
   readonly p97_5: number;
 }
@@ -17,16 +15,12 @@ export function summarise(column: Float64Array): Summary {
   const values = column.filter(Number.isFinite);
   const n = values.length;
   const none = Number.NaN;
-  if (n === 0) return { count: 0, mean: none, sd: none, sdError: none, p2_5: none, p97_5: none };
+  if (n === 0) return { count: 0, mean: none, sd: none, p2_5: none, p97_5: none };
   const mean = compensatedSum(values, (value) => value) / n;
   const square = compensatedSum(values, (value) => (value - mean) ** 2);
-  const fourth = compensatedSum(values, (value) => (value - mean) ** 4) / n;
-  const variance = square / (n - 1);
-  const sd = n < 2 ? none : Math.sqrt(variance);
-  // var(s²) ≈ (m₄ − s⁴)/n, and sd(s) ≈ sd(s²)/2s
-  const sdError = sd > 0 ? Math.sqrt(Math.max(0, fourth - variance * variance) / n) / (2 * sd) : none;
+  const sd = n < 2 ? none : Math.sqrt(square / (n - 1));
   values.sort();
-  return { count: n, mean, sd, sdError, p2_5: quantile(values, 0.025), p97_5: quantile(values, 0.975) };
+  return { count: n, mean, sd, p2_5: quantile(values, 0.025), p97_5: quantile(values, 0.975) };
 }
 
 /**

@@ -152,12 +152,22 @@ interface Screen {
   readonly sizePx: number;
 }
 
-/** CSS pixels per root unit: ours where the drawing says its size, else the browser's, which fills its window. */
+/**
+ * CSS pixels per root unit as the drawing says, or the browser's where it does not (it then fills the window) and where the
+ * two differ by the 1/64 px to which a browser cuts the page.
+ */
 async function screenOf(page: Page, { unitMm, widthMm, heightMm }: SvgDrawing): Promise<Screen> {
+  const theirs = Number(
+    await page.evaluate(
+      '(({ a, b, c, d }) => Math.sqrt(a * d - b * c))(document.documentElement.getScreenCTM())',
+    ),
+  );
   const sizePx = Math.max(widthMm ?? 0, heightMm ?? 0) / PX_MM;
-  if (sizePx > 0) return { pxPerUnit: unitMm / PX_MM, sizePx };
-  const filled = await page.evaluate('document.documentElement.getScreenCTM().a');
-  return { pxPerUnit: Number(filled), sizePx: WINDOW_PX };
+  if (sizePx === 0) return { pxPerUnit: theirs, sizePx: WINDOW_PX };
+  const ours = unitMm / PX_MM;
+  const shorterPx = Math.min(widthMm ?? sizePx * PX_MM, heightMm ?? sizePx * PX_MM) / PX_MM;
+  const isCut = Math.abs(theirs / ours - 1) * shorterPx <= 1 / 64 + 1e-9;
+  return { pxPerUnit: isCut ? theirs : ours, sizePx };
 }
 
 function scaled(matrix: Matrix, by: number): Matrix {

@@ -53,6 +53,24 @@ describe('level-sensitive', () => {
     }
   });
 
+  it('measures the same behind tubing, by either way of computing it', () => {
+    const one = {
+      ...PORTS,
+      a: '{ pressure: 600 Pa }',
+      out: '{ pressure: -100 Pa }',
+      drain: '{ head: 0 mm }',
+    };
+    const after = [
+      { ...one, c: PORTS.c.replace('30', '35') },
+      { ...one, drain: '{ head: 5 mm }' },
+    ].map((ports) => Math.abs(flowOf('in-3', ports) / flowOf('in-3', one) - 1));
+    for (const windowed of [['in-3'], ['in-3', 'lane', 'in-1', 'in-2']]) {
+      const [finding] = levelFindings(one, windowed).filter(({ names }) => names[0] === 'in-3');
+      expect(finding.names).toContain('c');
+      expect(Math.abs((finding.measured ?? 0) / Math.max(...after) - 1)).toBeLessThan(1e-9);
+    }
+  });
+
   it('is content where pressures are high, where pumps give the flow, and where nothing is windowed', () => {
     const high = { ...PORTS, a: '{ head: 1.5 m }', b: '{ pressure: 15 kPa }', c: '{ head: 1.5 m }' };
     expect(levelFindings(high, ['lane'])).toEqual([]);

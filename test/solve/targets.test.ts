@@ -56,6 +56,19 @@ describe('findSettings', () => {
     expect(target.response.observed.at).toBeGreaterThan(0);
   });
 
+  it('keeps that way too where the port to be found would push against it', () => {
+    const drawn = networkFrom(
+      BRIDGE,
+      bridge(
+        `  a: { pressure: 0 Pa }\n  b: sealed\n  c: { pressure: 2 kPa }\n  d: sealed`,
+        '  - { channel: out-1, wall_shear: 0.05 Pa, by: a }',
+      ),
+    );
+    const [target] = findSettings(drawn).targets;
+    expect(target.response.observed.at).toBeLessThan(0);
+    expect(rel(target.reached, 0.05)).toBeLessThan(1e-12);
+  });
+
   it('pushes into the chip where nothing flows yet, and draws out of it where the port says expect: out', () => {
     const settingOf = (port: string): number =>
       findSettings(
@@ -125,6 +138,23 @@ describe('findSettings', () => {
         expect(rel(range?.high ?? 0, settingFor(high))).toBeLessThan(1e-10);
         expect(rel(response.setting, (settingFor(low) + settingFor(high)) / 2)).toBeLessThan(1e-10);
       }
+    });
+
+    it('gives the settings in their order also where more pressure means less flow', () => {
+      const against = (value: string) =>
+        findSettings(
+          networkFrom(
+            BRIDGE,
+            bridge(
+              '  a: { pressure: 3 kPa }\n  b: sealed\n  c: open\n  d: sealed',
+              `  - { channel: out-1, ${value}, by: c }`,
+            ),
+          ),
+        ).targets[0];
+      const { range, response } = against('flow: { min: 1 uL/min, max: 3 uL/min }');
+      expect(rel(range?.low ?? 0, against('flow: 3 uL/min').response.setting)).toBeLessThan(1e-10);
+      expect(rel(range?.high ?? 0, against('flow: 1 uL/min').response.setting)).toBeLessThan(1e-10);
+      expect(rel(response.setting, against('flow: 2 uL/min').response.setting)).toBeLessThan(1e-10);
     });
 
     it('sets its given end where it is open, and the middle between rest and a most', () => {

@@ -107,8 +107,9 @@ test('where the response bends, it is said to: the flow at 40 % of depth, and no
   expect((await flowAt(2)).isLinear).toBe(true);
   const bent = await flowAt(40);
   expect(bent.isLinear).toBe(false);
-  // E[(1 + σz)³] = 1 + 3σ² for plates, a little less for a duct
-  expect(bent.mean / bent.nominal).toBeGreaterThan(1 + 2.5 * 0.2 ** 2);
+  // E[(1 + σz)^e] ≈ 1 + e(e − 1)/2 σ²: 3σ² for plates, 2.4σ² for a duct of a quarter's aspect
+  expect(bent.mean / bent.nominal).toBeGreaterThan(1 + 2.2 * 0.2 ** 2);
+  expect(bent.mean / bent.nominal).toBeLessThan(1 + 3 * 0.2 ** 2);
 });
 
 test('a flow that goes with a uniform pressure has its uniform quantiles and its share inside a window', async () => {
