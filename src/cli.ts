@@ -1,9 +1,6 @@
-import { Command, CommanderError, Option } from 'commander';
-import { check } from './commands/check.ts';
-import { declarePump } from './commands/declare.ts';
-import { declareSpread } from './commands/declare-spread.ts';
+import { Command, CommanderError } from 'commander';
+import { declareCommands } from './commands/declare.ts';
 import { Interrupted, type Io, WriteError } from './commands/io.ts';
-import { FORMATS } from './commands/options.ts';
 import { InputError } from './errors.ts';
 import { VERSION } from './version.ts';
 
@@ -102,40 +99,7 @@ Examples:
 ${EXIT_CODES}`,
     );
 
-  program
-    .command('check')
-    .description('read, check, solve and report a layout')
-    .argument('<LAYOUT>', 'the SVG drawing of the chip')
-    .option('-r, --run <FILE>', 'the run sheet (default: LAYOUT with .run.yaml; - for stdin)')
-    .option('--case <NAME>', 'only this case')
-    .option('-o, --out <DIR>', 'where reports go', 'reports')
-    .option('-f, --formats <LIST>', `of ${FORMATS.join(',')}, or none (default: pdf,svg; none with --json)`)
-    .option('--json', 'print the result on stdout as JSON, and nothing else there')
-    .addOption(
-      new Option('--detail <LEVEL>', 'how deep JSON goes')
-        .choices(['ports', 'reaches', 'segments'])
-        .default('segments'),
-    )
-    .addOption(
-      new Option('--colour <QUANTITY>', 'what colours the SVG picture')
-        .choices(['shear', 'pressure', 'flow', 'residence'])
-        .default('pressure'),
-    )
-    .addOption(new Option('--paper <SIZE>', 'paper of the PDF').choices(['a4', 'letter']).default('a4'))
-    .option('-q, --quiet', 'print only the verdict')
-    .option('--no-color', 'no colour on the terminal')
-    .addHelpText(
-      'after',
-      `
-Examples:
-  rillcheck check chip.svg -o out -f pdf,csv
-  rillcheck check chip.svg --json --detail ports
-  rillcheck check chip.svg --colour shear --quiet
-${EXIT_CODES}`,
-    )
-    .action(async (layout: string, options) => finish(await check(layout, options, io)));
-  declarePump(program, io, finish, EXIT_CODES);
-  declareSpread(program, io, finish, EXIT_CODES);
+  declareCommands(program, io, finish, EXIT_CODES);
 
   return program;
 }

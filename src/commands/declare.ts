@@ -1,39 +1,55 @@
 import { type Command, Option } from 'commander';
-import { draft } from './draft.ts';
 import type { Io } from './io.ts';
 import { FORMATS } from './options.ts';
-import { pump } from './pump.ts';
-import { section } from './section.ts';
 
-/** Adds the commands pump, section and draft to the program. `exitCodes` ends each one's help. */
-export function declarePump(
+interface Declaring {
+  readonly program: Command;
+  readonly io: Io;
+  readonly finish: (code: number) => void;
+  /** Ends each command's help. */
+  readonly exitCodes: string;
+}
+
+/** Declares every command. What a command needs is loaded when it runs, so that help and version start at once. */
+export function declareCommands(
   program: Command,
   io: Io,
   finish: (code: number) => void,
   exitCodes: string,
 ): void {
-  program
-    .command('pump')
+  const declaring = { program, io, finish, exitCodes };
+  declareCheck(declaring);
+  declarePump(declaring);
+  declareSpread(declaring);
+  declareSection(declaring);
+  declareDraft(declaring);
+}
+
+/** The main job. */
+function declareCheck({ program, io, finish, exitCodes }: Declaring): void {
+  layoutOptions(program.command('check'))
+    .description('read, check, solve and report a layout')
+    .argument('<LAYOUT>', 'the SVG drawing of the chip')
+    .addHelpText(
+      'after',
+      `
+Examples:
+  rillcheck check chip.svg -o out -f pdf,csv
+  rillcheck check chip.svg --json --detail ports
+  rillcheck check chip.svg --colour shear --quiet
+${exitCodes}`,
+    )
+    .action(async (layout: string, options) => {
+      const { check } = await import('./check.ts');
+      finish(await check(layout, options, io));
+    });
+}
+
+/** Settings for targets. */
+function declarePump({ program, io, finish, exitCodes }: Declaring): void {
+  layoutOptions(program.command('pump'))
     .description('find the pump settings that meet the targets of the run sheet, and check the chip at them')
     .argument('<LAYOUT>', 'the SVG drawing of the chip')
-    .option('-r, --run <FILE>', 'the run sheet (default: LAYOUT with .run.yaml; - for stdin)')
-    .option('--case <NAME>', 'only this case')
-    .option('-o, --out <DIR>', 'where reports go', 'reports')
-    .option('-f, --formats <LIST>', `of ${FORMATS.join(',')}, or none (default: pdf,svg; none with --json)`)
-    .option('--json', 'print the result on stdout as JSON, and nothing else there')
-    .addOption(
-      new Option('--detail <LEVEL>', 'how deep JSON goes')
-        .choices(['ports', 'reaches', 'segments'])
-        .default('segments'),
-    )
-    .addOption(
-      new Option('--colour <QUANTITY>', 'what colours the SVG picture')
-        .choices(['shear', 'pressure', 'flow', 'residence'])
-        .default('pressure'),
-    )
-    .addOption(new Option('--paper <SIZE>', 'paper of the PDF').choices(['a4', 'letter']).default('a4'))
-    .option('-q, --quiet', 'print only the verdict')
-    .option('--no-color', 'no colour on the terminal')
     .addHelpText(
       'after',
       `
@@ -47,8 +63,41 @@ Examples:
   rillcheck pump chip.svg --case culture           only this case of the run sheet
 ${exitCodes}`,
     )
-    .action(async (layout: string, options) => finish(await pump(layout, options, io)));
+    .action(async (layout: string, options) => {
+      const { pump } = await import('./pump.ts');
+      finish(await pump(layout, options, io));
+    });
+}
 
+/** Fabrication tolerances. */
+function declareSpread({ program, io, finish, exitCodes }: Declaring): void {
+  layoutOptions(program.command('spread'))
+    .description('how far fabrication tolerances move every result, and which of them to pay for')
+    .argument('<LAYOUT>', 'the SVG drawing of the chip')
+    .option('--draws <N>', 'draws in the sample', '10000')
+    .option('--seed <N>', 'another seed gives another sample; the same gives the same', '1')
+    .option('--samples <FILE>', 'write every draw as CSV')
+    .addHelpText(
+      'after',
+      `
+Tolerances stand in the run sheet; a value is 2 sigma, { limit: … } a hard limit:
+  tolerances: { depth: { lanes: 5 %, default: 3 % }, width: 2 um, temperature: 1 degC, pressure: { feed: { limit: 1 % } } }
+
+Examples:
+  rillcheck spread chip.svg                              10 000 draws; reports/chip.pdf with pages on the spread
+  rillcheck spread chip.svg --draws 2000 --json --detail ports
+  rillcheck spread chip.svg -f csv --samples draws.csv   quantiles in reports/chip.spread.csv, every draw in draws.csv
+${exitCodes}
+       Ctrl-C while draws are made reports those made so far, marked as such`,
+    )
+    .action(async (layout: string, options) => {
+      const { spread } = await import('./spread.ts');
+      finish(await spread(layout, options, io));
+    });
+}
+
+/** One duct. */
+function declareSection({ program, io, finish, exitCodes }: Declaring): void {
   program
     .command('section')
     .description('one straight duct without a layout: resistance, flow, pressure, wall shear')
@@ -76,8 +125,14 @@ Examples:
   rillcheck section --width "100 um" --depth "50 um" --length "10 mm" --pressure "12 kPa" --viscosity "1 mPa s" --density "1000 kg/m^3" --json
 ${exitCodes}`,
     )
-    .action(async (options) => finish(await section(options, io)));
+    .action(async (options) => {
+      const { section } = await import('./section.ts');
+      finish(await section(options, io));
+    });
+}
 
+/** A first run sheet. */
+function declareDraft({ program, io, finish, exitCodes }: Declaring): void {
   program
     .command('draft')
     .description('write a first run sheet for a layout, with what must be filled in marked')
@@ -93,5 +148,31 @@ Examples:
   rillcheck draft chip.svg --force      begins anew
 ${exitCodes}`,
     )
-    .action(async (layout: string, options) => finish(await draft(layout, options, io)));
+    .action(async (layout: string, options) => {
+      const { draft } = await import('./draft.ts');
+      finish(await draft(layout, options, io));
+    });
+}
+
+/** Options of every command that reads, solves and reports a layout. */
+function layoutOptions(command: Command): Command {
+  return command
+    .option('-r, --run <FILE>', 'the run sheet (default: LAYOUT with .run.yaml; - for stdin)')
+    .option('--case <NAME>', 'only this case')
+    .option('-o, --out <DIR>', 'where reports go', 'reports')
+    .option('-f, --formats <LIST>', `of ${FORMATS.join(',')}, or none (default: pdf,svg; none with --json)`)
+    .option('--json', 'print the result on stdout as JSON, and nothing else there')
+    .addOption(
+      new Option('--detail <LEVEL>', 'how deep JSON goes')
+        .choices(['ports', 'reaches', 'segments'])
+        .default('segments'),
+    )
+    .addOption(
+      new Option('--colour <QUANTITY>', 'what colours the SVG picture')
+        .choices(['shear', 'pressure', 'flow', 'residence'])
+        .default('pressure'),
+    )
+    .addOption(new Option('--paper <SIZE>', 'paper of the PDF').choices(['a4', 'letter']).default('a4'))
+    .option('-q, --quiet', 'print only the verdict')
+    .option('--no-color', 'no colour on the terminal');
 }

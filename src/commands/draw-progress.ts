@@ -15,10 +15,11 @@ export function drawProgress(io: Io, quiet: boolean, draws: number, caseName: st
   const title = caseName === null ? 'draws' : `${printable(caseName)}: draws`;
   const bar = new cliProgress.SingleBar(
     {
-      format: `${title} {bar} {value}/{total}, {eta_formatted} left (Ctrl-C reports what is done)`,
+      format: `${title} {bar} {value}/{total}, {eta_formatted} left; Ctrl-C reports these`,
       stream: process.stderr,
       hideCursor: true,
       clearOnComplete: true,
+      barsize: 24,
       etaBuffer: 50,
       // Ctrl-C is the program's own business
       gracefulExit: false,
@@ -26,8 +27,16 @@ export function drawProgress(io: Io, quiet: boolean, draws: number, caseName: st
     cliProgress.Presets.shades_classic,
   );
   bar.start(draws, 0);
-  return { update: (done) => bar.update(done), done: () => bar.stop() };
+  return {
+    // the time left means nothing after a draw or two
+    update: (done) => {
+      if (done >= FIRST_SHOWN) bar.update(done);
+    },
+    done: () => bar.stop(),
+  };
 }
+
+const FIRST_SHOWN = 20;
 
 /** A case's name is data: no control characters reach the terminal, and no braces the bar's format. */
 function printable(name: string): string {

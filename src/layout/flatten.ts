@@ -65,7 +65,7 @@ const STRAIGHT = 1e6;
 const ENDS_MEET = 1e-9;
 
 /** Coordinates beyond this leave no digits for a chip, and their cubes would overflow. */
-const MAX_COORDINATE = 1e12;
+export const MAX_COORDINATE = 1e12;
 
 class Polyline {
   readonly subpaths: Subpath[] = [];

@@ -7,7 +7,7 @@ import { PX_MM } from '../svg/lengths.ts';
 import { stretches } from '../svg/matrix.ts';
 import type { Group, Shape, SvgDrawing } from '../svg/types.ts';
 import { quoted, ValueError } from '../svg/value-error.ts';
-import { type Flattened, flatten, MAX_PIECES, type PieceBudget } from './flatten.ts';
+import { type Flattened, flatten, MAX_COORDINATE, MAX_PIECES, type PieceBudget } from './flatten.ts';
 import { type Circle, ROUNDNESS, roundRing } from './roundness.ts';
 import type { Drawn, Hole, Ignored, Layout, LayoutItem, Outline, Stroke } from './types.ts';
 
@@ -152,11 +152,17 @@ function toStroke(shape: Shape, drawn: Drawn, flat: Flattened, laying: Laying): 
 /** Scaled by the full transform; null when that is no similarity, for then the width depends on the direction. */
 function strokeWidth(shape: Shape, { pxUnits }: Laying): number | null {
   const { strokeWidth, nonScalingStroke } = shape.style;
-  // SVG 2, 8.13: such a stroke is as wide as on the page, whatever the transforms and the viewBox.
-  if (nonScalingStroke) return strokeWidth * pxUnits;
   const [larger, smaller] = stretches(shape.toRoot);
-  return larger - smaller <= SIMILARITY * larger ? (strokeWidth * (larger + smaller)) / 2 : null;
+  // SVG 2, 8.13: a stroke that does not scale is as wide as on the page, whatever the transforms and the viewBox.
+  const width = strokeWidth * (nonScalingStroke ? pxUnits : (larger + smaller) / 2);
+  if (width < SMALLEST_WIDTH || width > MAX_COORDINATE) {
+    throw new ValueError(`its stroke is ${width} units wide, which is no channel's width; set it again`);
+  }
+  return nonScalingStroke || larger - smaller <= SIMILARITY * larger ? width : null;
 }
+
+/** Units of the drawing; below it a resistance, with the cube of the width in it, leaves what a double can hold. */
+const SMALLEST_WIDTH = 1e-12;
 
 /** The circle that a circle or ellipse draws after its transform; null when it is not round within 1 %. */
 function drawnCircle(shape: Shape): Circle | null {
@@ -167,8 +173,8 @@ function drawnCircle(shape: Shape): Circle | null {
   const [a, b, c, d, e, f] = shape.toRoot;
   const [larger, smaller] = stretches([a * rx, b * rx, c * ry, d * ry, 0, 0]);
   const circle = { x: a * cx + c * cy + e, y: b * cx + d * cy + f, radius: (larger + smaller) / 2 };
-  if (!(Math.max(Math.abs(circle.x), Math.abs(circle.y), larger) <= 1e12)) {
-    throw new ValueError('it lies beyond ±1e12 units; move or scale the drawing');
+  if (!(Math.max(Math.abs(circle.x), Math.abs(circle.y), larger) <= MAX_COORDINATE)) {
+    throw new ValueError(`it lies beyond ±${MAX_COORDINATE} units; move or scale the drawing`);
   }
   return larger <= (1 + ROUNDNESS) * smaller ? circle : null;
 }

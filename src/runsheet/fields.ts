@@ -45,9 +45,15 @@ export function quantity(
 export function text(description: string, example: string): Field<string> {
   return scalar(example, { description, examples: [example], type: ['string', 'number'] }, (written) => {
     if (written.trim() === '') throw new QuantityError(`is empty; ${hint(example)}`);
+    if (written.length > MAX_TEXT) {
+      throw new QuantityError(`has ${written.length} characters, over ${MAX_TEXT} (the limit); shorten it`);
+    }
     return written;
   });
 }
+
+/** Longest text in characters: it is printed on paper. */
+const MAX_TEXT = 1000;
 
 /** One word of a list. */
 export function word<const T extends string>(options: readonly T[], description: string): Field<T> {

@@ -42,9 +42,11 @@ export function parseQuantity(text: string, quantity: Quantity, exampleUnit?: st
   const unitShown = exampleUnit ?? kind.exampleUnit;
   const { value, numberText, unitText } = splitNumber(text, kind, unitShown);
   const example = hint(`${numberText} ${unitShown}`.trim());
+  const usual = hint(`${kind.exampleNumber} ${unitShown}`.trim());
   if (quantity === 'ratio') {
     if (unitText !== '')
       throw new QuantityError(`${quote(text)} has a unit; this is a plain ratio; ${example}`);
+    refuseBeyond(text, value, quantity, usual);
     return value;
   }
   if (unitText === '') throw new QuantityError(`${quote(text)} has no unit; ${example}`);
@@ -63,10 +65,38 @@ export function parseQuantity(text: string, quantity: Quantity, exampleUnit?: st
   }
   const si = quantity === 'temperature' ? scale.absolute(value) : scale.difference(value);
   if (!Number.isFinite(si)) throw new QuantityError(`${quote(text)} is too large; ${example}`);
+  refuseBeyond(text, si, quantity, usual);
   if (quantity === 'temperature' && si <= 0) {
     throw new QuantityError(`${quote(text)} is below absolute zero; ${hint('37 degC')}`);
   }
   return si;
+}
+
+/**
+ * Smallest and largest size in SI units (0 is always read): far beyond anything on a chip, and narrow enough that a
+ * resistance, with the cube of a depth in it, still fits a double.
+ */
+const SIZES: Readonly<Record<Quantity, readonly [number, number]>> = {
+  length: [1e-12, 1e4],
+  pressure: [1e-12, 1e12],
+  wall_shear: [1e-12, 1e12],
+  flow: [1e-30, 1e3],
+  time: [1e-12, 1e15],
+  velocity: [1e-18, 1e6],
+  viscosity: [1e-9, 1e9],
+  density: [1e-9, 1e9],
+  temperature: [0, 1e6],
+  temperature_difference: [0, 1e6],
+  angle: [0, 1e3],
+  share: [1e-12, 1e9],
+  ratio: [1e-12, 1e12],
+};
+
+function refuseBeyond(text: string, si: number, quantity: Quantity, usual: string): void {
+  const size = Math.abs(si);
+  const [least, most] = SIZES[quantity];
+  if (size > most) throw new QuantityError(`${quote(text)} is too large for a chip; ${usual}`);
+  if (size !== 0 && size < least) throw new QuantityError(`${quote(text)} is too small for a chip; ${usual}`);
 }
 
 /**

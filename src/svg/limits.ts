@@ -3,8 +3,11 @@
 /** "An SVG over 32 MB": bytes of UTF-8. */
 export const MAX_SVG_BYTES = 32_000_000;
 
-/** Elements in the file, and drawn elements after every `use` has been followed. */
+/** Elements in the file. */
 export const MAX_ELEMENTS = 2_000_000;
+
+/** Elements that `use` draws again, each counted as often as it is drawn. */
+export const MAX_COPIES = 500_000;
 
 /** Commands of all paths together, each path counted as often as `use` draws it. */
 export const MAX_PATH_COMMANDS = 4_000_000;

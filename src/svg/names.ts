@@ -1,7 +1,23 @@
 import { attribute, prefixedAttribute, type XmlElement } from './tree.ts';
+import { ValueError } from './value-error.ts';
 
-/** The drawn name: `data-name`, a vector editor's label (`inkscape:label` …), a child `title`, `id`; trimmed; else null. */
+/** Longest drawn name in characters: names are printed on paper, on pictures and in every row of a table. */
+export const MAX_NAME = 1000;
+
+/**
+ * The drawn name: `data-name`, a vector editor's label (any `*:label`), a child `title`, `id`; trimmed; else null.
+ * @throws ValueError for one longer than MAX_NAME.
+ */
 export function drawnName(element: XmlElement): string | null {
+  const name = nameAsDrawn(element);
+  if (name !== null && name.length > MAX_NAME) {
+    throw new ValueError(`its name has ${name.length} characters, over ${MAX_NAME} (the limit); shorten it`);
+  }
+  return name;
+}
+
+/** The drawn name of whatever length, to say which element is meant. */
+export function nameAsDrawn(element: XmlElement): string | null {
   const title = element.children.find((child) => child.name === 'title' && child.isSvg);
   return (
     nonEmpty(attribute(element, 'data-name')) ??

@@ -39,6 +39,18 @@ export interface RootScale {
  * @throws ValueError for a size or viewBox that cannot be read or is not positive.
  */
 export function rootScale(get: (name: string) => string | undefined): RootScale {
+  const scale = readScale(get);
+  if (scale.unitMm >= SMALLEST_UNIT_MM && scale.unitMm <= LARGEST_UNIT_MM) return scale;
+  throw new ValueError(
+    `a unit of the drawing would be ${scale.unitMm} mm (${scale.unitReason}); give it the width, height and viewBox of a chip`,
+  );
+}
+
+/** A picometre and a kilometre: beyond them coordinates and widths leave what a double can multiply. */
+const SMALLEST_UNIT_MM = 1e-9;
+const LARGEST_UNIT_MM = 1e6;
+
+function readScale(get: (name: string) => string | undefined): RootScale {
   const width = parseSide(get('width'), 'width');
   const height = parseSide(get('height'), 'height');
   const viewBox = parseViewBox(get('viewBox'));

@@ -6,9 +6,9 @@
 import { InputError } from '../errors.ts';
 import type { Cascade, Specified } from './cascade.ts';
 import { parseLength, toUserUnits } from './lengths.ts';
-import { MAX_ELEMENTS, MAX_GROUP_NAMES, MAX_PATH_COMMANDS } from './limits.ts';
+import { MAX_COPIES, MAX_ELEMENTS, MAX_GROUP_NAMES, MAX_PATH_COMMANDS } from './limits.ts';
 import { multiply, translation } from './matrix.ts';
-import { drawnId, drawnName } from './names.ts';
+import { drawnId, drawnName, nameAsDrawn } from './names.ts';
 import { shapePath } from './shapes.ts';
 import {
   addDisguises,
@@ -126,6 +126,7 @@ class Walk {
   readonly #frames: Frame[] = [];
   readonly #open = new Set<XmlElement>();
   #visits = 0;
+  #copies = 0;
   #commands = 0;
   #groupNames = 0;
   /** Paths of elements that `use` draws again, with the viewport that their percentages referred to. */
@@ -159,6 +160,12 @@ class Walk {
 
   enter(element: XmlElement, context: Context): void {
     this.#visit(1, element);
+    if (context.copyOf !== null && ++this.#copies > MAX_COPIES) {
+      throw this.#fault(
+        element,
+        `the drawing has more than ${MAX_COPIES} elements that use draws again (the limit); split it`,
+      );
+    }
     if (!element.isSvg) return;
     try {
       const passedOver = this.#draw(element, context);
@@ -347,13 +354,13 @@ class Walk {
     if (this.#visits > MAX_ELEMENTS) {
       throw this.#fault(
         element,
-        `the drawing has more than ${MAX_ELEMENTS} elements once every use is followed (the limit); split it`,
+        `the drawing has more than ${MAX_ELEMENTS} elements (the limit); split it`,
       );
     }
   }
 
   #fault(element: XmlElement, what: string, cause?: unknown): InputError {
-    const name = drawnName(element);
+    const name = nameAsDrawn(element);
     const said = name === null ? `<${element.name}>` : `<${element.name}> ${quoted(name)}`;
     return new InputError(`${this.#where}:${element.line}`, `${said}: ${what}`, { cause });
   }

@@ -5,11 +5,12 @@ import { join } from 'node:path';
 import { performance } from 'node:perf_hooks';
 import { measureFactorisation } from './factorisation.ts';
 import { type BigLayout, lanes, lattice, tree } from './layouts.ts';
+import { measureSpread } from './spread.ts';
 import { measureStages, STAGES, type StageTimes } from './stages.ts';
 
 /**
  * npm run bench: everything the project claims of its speed, as ratios measured in this run. Nothing is asserted; numbers
- * depend on the machine, ratios much less. Argument: `start`, `size`, `peer`, `factor` or nothing for all.
+ * depend on the machine, ratios much less. Argument: `start`, `size`, `peer`, `factor`, `spread` or nothing for all.
  */
 export async function main(args: readonly string[]): Promise<void> {
   const wanted = args[0];
@@ -20,6 +21,7 @@ export async function main(args: readonly string[]): Promise<void> {
     if (wanted === undefined || wanted === 'size') await measureSizes(folder);
     if (wanted === undefined || wanted === 'peer') measurePeer(folder);
     if (wanted === undefined || wanted === 'factor') measureFactorisation();
+    if (wanted === undefined || wanted === 'spread') await measureSpread();
   } finally {
     rmSync(folder, { recursive: true, force: true });
   }

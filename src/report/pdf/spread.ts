@@ -251,6 +251,7 @@ function paintAxis(
 /* ---------- numbers ---------- */
 
 function writeNumbers(paper: Paper, section: Element, spread: Spread, show: Show): void {
+  paper.newPage('landscape');
   paper.heading(section, 2, 'Numbers');
   const rows: TableRow[] = [];
   let group = '';
@@ -281,7 +282,7 @@ function writeNumbers(paper: Paper, section: Element, spread: Spread, show: Show
       { head: 'linear', align: 'left', width: 'fit' },
       { head: 'asked', align: 'left', width: 'fit' },
       { head: 'kept', align: 'right', width: 'fit' },
-      { head: 'main causes', align: 'left', width: 'wrap' },
+      { head: 'main causes', align: 'left', width: 'share' },
     ],
     rows,
     { size: 6.5 },
