@@ -1,5 +1,6 @@
 import type { Analysis } from '../analyse.ts';
 import { InputError } from '../errors.ts';
+import { settleAccepts } from '../findings/check.ts';
 import { buildCasesReport, buildReport, type Report } from '../report/report.ts';
 import type { ResultInput } from '../report/result.ts';
 import { nearest } from '../runsheet/nearest.ts';
@@ -42,9 +43,16 @@ export function toReport(
   }[],
   layoutFile: string,
 ): Report {
-  const inputs = cases.map(({ name, analysis, extra }) => ({
+  const settled = settleAccepts(cases.map(({ analysis }) => analysis.findings));
+  const inputs = cases.map(({ name, analysis, extra }, i) => ({
     name,
-    input: { tool: { name: 'rillcheck', version: VERSION }, layoutFile, ...analysis, ...extra },
+    input: {
+      tool: { name: 'rillcheck', version: VERSION },
+      layoutFile,
+      ...analysis,
+      findings: settled[i],
+      ...extra,
+    },
   }));
   if (inputs.length === 1 && inputs[0].name === null) return buildReport(inputs[0].input);
   return buildCasesReport(inputs.map(({ name, input }) => ({ name: name ?? '', input })));

@@ -1,13 +1,9 @@
 import { type Analysis, analyse } from '../analyse.ts';
-import { InputError } from '../errors.ts';
 import { layOut } from '../layout/layout.ts';
-import { buildCasesReport, buildReport, type Report } from '../report/report.ts';
 import { terminalSummary } from '../report/terminal.ts';
-import { nearest } from '../runsheet/nearest.ts';
 import { parseRunSheet } from '../runsheet/parse.ts';
-import type { RunSheet } from '../runsheet/types.ts';
 import { readSvg } from '../svg/read.ts';
-import { VERSION } from '../version.ts';
+import { casesOf, toReport } from './cases.ts';
 import { terminalOptions } from './colour.ts';
 import type { Io } from './io.ts';
 import { type CheckOptions, formatsOf } from './options.ts';
@@ -46,33 +42,4 @@ export async function check(layoutPath: string, options: CheckOptions, io: Io): 
   } finally {
     progress.done();
   }
-}
-
-/** The cases to look at: the sheet itself without any, all of them, or the one asked for. */
-function casesOf(
-  sheet: RunSheet | null,
-  wanted: string | undefined,
-): { name: string | null; sheet: RunSheet | null }[] {
-  const cases = sheet?.cases ?? [];
-  if (wanted !== undefined) {
-    const found = cases.find(({ name }) => name === wanted);
-    if (found !== undefined) return [found];
-    const names = cases.map(({ name }) => name);
-    const near = nearest(wanted, names);
-    const hint =
-      names.length === 0
-        ? 'the run sheet has no cases'
-        : `did you mean "${near ?? names[0]}"? Its cases are ${names.join(', ')}`;
-    throw new InputError('--case', `there is no case "${wanted}"; ${hint}`);
-  }
-  return cases.length === 0 ? [{ name: null, sheet }] : [...cases];
-}
-
-function toReport(cases: readonly { name: string | null; analysis: Analysis }[], layoutFile: string): Report {
-  const inputs = cases.map(({ name, analysis }) => ({
-    name,
-    input: { tool: { name: 'rillcheck', version: VERSION }, layoutFile, ...analysis },
-  }));
-  if (inputs.length === 1 && inputs[0].name === null) return buildReport(inputs[0].input);
-  return buildCasesReport(inputs.map(({ name, input }) => ({ name: name ?? '', input })));
 }

@@ -24,7 +24,7 @@ import { type CheckOptions, type Format, formatsOf } from './options.ts';
 import { type Progress, stageProgress } from './progress.ts';
 import { defaultRunSheet, readLayout, readRunSheet, reportName } from './read-files.ts';
 import { type OutFile, writeFiles } from './write-files.ts';
-import { caseFileName, writeReports } from './write-reports.ts';
+import { caseFileNames, writeReports } from './write-reports.ts';
 
 export interface SpreadCommandOptions extends CheckOptions {
   readonly draws: string;
@@ -216,10 +216,11 @@ async function writeSamples(report: Report, path: string, io: Io): Promise<void>
   const full = isAbsolute(path) ? path : join(io.cwd, path);
   const extension = extname(full);
   const name = basename(full, extension);
-  const files = report.cases.flatMap((one): OutFile[] =>
+  const names = caseFileNames(name, report.cases);
+  const files = report.cases.flatMap((one, i): OutFile[] =>
     one.spread === undefined
       ? []
-      : [{ name: `${caseFileName(name, one)}${extension}`, content: writeSamplesCsv(one.spread) }],
+      : [{ name: `${names[i]}${extension}`, content: writeSamplesCsv(one.spread) }],
   );
   await writeFiles(dirname(full), files, io);
 }

@@ -46,18 +46,21 @@ async function toFiles(
   switch (format) {
     case 'json':
       return [{ name: `${name}.json`, content: writeJson(report.result, options.detail) }];
-    case 'csv':
-      return report.cases.flatMap((one) => [
-        { name: `${caseFileName(name, one)}.reaches.csv`, content: writeReachesCsv(one.part.reaches) },
-        { name: `${caseFileName(name, one)}.segments.csv`, content: writeSegmentsCsv(one.part.segments) },
+    case 'csv': {
+      const names = caseFileNames(name, report.cases);
+      return report.cases.flatMap((one, i) => [
+        { name: `${names[i]}.reaches.csv`, content: writeReachesCsv(one.part.reaches) },
+        { name: `${names[i]}.segments.csv`, content: writeSegmentsCsv(one.part.segments) },
         ...(one.part.spread === undefined
           ? []
-          : [{ name: `${caseFileName(name, one)}.spread.csv`, content: writeSpreadCsv(one.part.spread) }]),
+          : [{ name: `${names[i]}.spread.csv`, content: writeSpreadCsv(one.part.spread) }]),
       ]);
+    }
     case 'svg': {
       const { svgPicture } = await import('../report/svg.ts');
-      return report.cases.map((one) => ({
-        name: `${caseFileName(name, one)}.svg`,
+      const names = caseFileNames(name, report.cases);
+      return report.cases.map((one, i) => ({
+        name: `${names[i]}.svg`,
         content: [svgPicture(one, { quantity: options.colour })],
       }));
     }
@@ -78,10 +81,24 @@ async function toFiles(
   }
 }
 
-/** One picture and table a case: `culture.seed.svg`. A case name is data, so only its harmless characters name a file. */
-export function caseFileName(name: string, { name: caseText }: ReportedCase): string {
-  return caseText === null ? name : `${name}.${caseText.replace(/[^\p{L}\p{N}_-]+/gu, '_')}`;
+/**
+ * One picture and table a case: `culture.seed.svg`. A case name is data, so only its harmless characters name a file; names
+ * that come out alike, also to a file system that does not tell upper from lower case, are numbered.
+ */
+export function caseFileNames(name: string, cases: readonly Pick<ReportedCase, 'name'>[]): readonly string[] {
+  const taken = new Set<string>();
+  return cases.map(({ name: caseText }) => {
+    if (caseText === null) return name;
+    const own = `${name}.${caseText.replace(/[^\p{L}\p{N}_-]+/gu, '_').slice(0, MAX_CASE_CHARACTERS)}`;
+    let free = own;
+    for (let i = 2; taken.has(free.toLowerCase()); i++) free = `${own}-${i}`;
+    taken.add(free.toLowerCase());
+    return free;
+  });
 }
+
+/** A file name may have 255 bytes in all, and a letter up to four. */
+const MAX_CASE_CHARACTERS = 40;
 
 const CHUNK_CHARACTERS = 1 << 16;
 

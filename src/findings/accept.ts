@@ -56,11 +56,12 @@ function objection(entry: AcceptEntry, finding: Finding, show: Show): string | n
 }
 
 function unmatchedAccept(
-  { rule, at, line }: AcceptEntry,
+  entry: AcceptEntry,
   findings: readonly Finding[],
   notRun: readonly NotRun[],
 ): Finding {
-  const skipped = notRun.find((entry) => entry.rule === rule);
+  const { rule, at, line } = entry;
+  const skipped = notRun.find((one) => one.rule === rule);
   const elsewhere = [
     ...new Set(findings.filter((finding) => finding.rule === rule).flatMap(({ names }) => names)),
   ];
@@ -70,10 +71,11 @@ function unmatchedAccept(
       : elsewhere.length === 0
         ? `there is no ${rule} finding`
         : `${rule} findings are at ${listText(elsewhere, 8)}`;
-  return toFinding('unmatched-accept', 'caution', {
+  const finding = toFinding('unmatched-accept', 'caution', {
     message: `the accept entry in line ${line} of the run sheet, ${rule} at ${at}, matches no finding; ${reason}`,
     fix: 'take the entry out of the run sheet, or correct its rule or its name',
     at: null,
     names: [at],
   });
+  return { ...finding, unmatched: entry };
 }

@@ -24,6 +24,25 @@ export function findAll(context: FindingContext, rules: readonly Rule[] = RULES)
   const findings = acceptFindings(raw, notRun, context.chip.accept, ruleNames, showFor(context)).sort(
     byUrgency,
   );
+  return toReport(findings, notRun);
+}
+
+/**
+ * Cases of one run sheet share its `accept` entries: one that matches a finding in any case is not unmatched in the others.
+ */
+export function settleAccepts(reports: readonly FindingReport[]): FindingReport[] {
+  const matched = new Set<number>();
+  for (const { findings } of reports)
+    for (const { accepted } of findings) if (accepted !== null) matched.add(accepted.line);
+  return reports.map((report) => {
+    const kept = report.findings.filter(
+      ({ unmatched }) => unmatched === undefined || !matched.has(unmatched.line),
+    );
+    return kept.length === report.findings.length ? report : toReport(kept, report.notRun);
+  });
+}
+
+function toReport(findings: readonly Finding[], notRun: readonly NotRun[]): FindingReport {
   const open = findings.filter(({ accepted }) => accepted === null);
   const blockers = countOf(open, 'blocker');
   return {

@@ -1,18 +1,19 @@
-import { type DuctForm, ductForm, gradientOf } from '../physics/duct.ts';
+import { type DuctForm, gradientOf } from '../physics/duct.ts';
 import { entranceLength } from '../physics/entrance.ts';
 import { reynoldsNumber } from '../physics/reynolds.ts';
+import { sectionForm } from '../physics/section.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 
 /** Form of each channel's duct, in the order of chip.channels; null where a width or depth is unknown. */
 export const channelForms: (context: FindingContext) => readonly (DuctForm | null)[] = oncePerContext(
   ({ chip }) => {
     const known = new Map<string, DuctForm>();
-    return chip.channels.map(({ ductWidthMm, depthMm }) => {
+    return chip.channels.map(({ ductWidthMm, depthMm, profile }) => {
       if (!(ductWidthMm > 0 && depthMm > 0)) return null;
-      const key = `${ductWidthMm} ${depthMm}`;
+      const key = `${ductWidthMm} ${depthMm} ${profile}`;
       let form = known.get(key);
       if (form === undefined) {
-        form = ductForm(ductWidthMm / 1000, depthMm / 1000);
+        form = sectionForm(profile, ductWidthMm / 1000, depthMm / 1000);
         known.set(key, form);
       }
       return form;

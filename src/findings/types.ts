@@ -21,6 +21,8 @@ export interface Finding {
   /** SI unit of measured and limit ("m", "Pa", "s", "m³/s", "rad", "" for a ratio), null without a measure. */
   readonly unit: string | null;
   readonly accepted: AcceptEntry | null;
+  /** The accept entry that an unmatched-accept is about. */
+  readonly unmatched?: AcceptEntry;
   /** What to draw at the place: the distance marked, in mm. Optional. */
   readonly mark?: {
     readonly x1Mm: number;

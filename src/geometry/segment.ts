@@ -17,7 +17,7 @@ export function nearestParameter(
   const lengthSquared = dx * dx + dy * dy;
   if (lengthSquared === 0) return 0;
   const t = ((px - ax) * dx + (py - ay) * dy) / lengthSquared;
-  return t < 0 ? 0 : t > 1 ? 1 : t;
+  return Math.max(0, Math.min(1, t));
 }
 
 /** Distance of p from the segment a→b. */

@@ -35,6 +35,8 @@ export interface DuctForm extends DuctFactors {
   readonly widthM: number;
   readonly depthM: number;
   readonly areaM2: number;
+  /** Width of the floor that means and shares are taken over: the duct's, or an etched section's true floor. */
+  readonly floorWidthM: number;
   /** 2wh/(w + h). */
   readonly hydraulicDiameterM: number;
   /** d ln(factor)/d ln(width), depth held. */
@@ -67,6 +69,7 @@ export function ductForm(widthM: number, depthM: number): DuctForm {
     widthM,
     depthM,
     areaM2: widthM * depthM,
+    floorWidthM: widthM,
     hydraulicDiameterM: (2 * shortSide) / (1 + shortSide / longSide),
     ...onWalls(factors, floorIsLong),
     byWidth: onWalls(floorIsLong ? byLong : byShort, floorIsLong),
@@ -114,7 +117,7 @@ export function floorShareInside(
   form: DuctForm,
   gradientPaM: number,
   range: ShearRange,
-  spanM: number = form.widthM,
+  spanM: number = form.floorWidthM,
 ): number {
   if (!(spanM > 0 && spanM <= form.widthM)) {
     throw new RangeError(`a span of the floor lies above 0 m and within ${form.widthM} m, not ${spanM}`);

@@ -1,4 +1,38 @@
 /** Cross-sections that stand for what a process leaves behind. */
+import { type DuctForm, ductForm } from './duct.ts';
+
+export type Profile = 'rectangle' | 'isotropic';
+
+/**
+ * Shape factors of a channel of a profile, by the width and depth (m) of the duct that stands for it. An isotropic etch is
+ * the duct of width mask + π·depth/2, with its floor, and the mean shear on it, as wide as the mask.
+ * @throws RangeError when a side is not a positive finite number, or the isotropic width leaves no mask.
+ */
+export function sectionForm(profile: Profile, ductWidthM: number, depthM: number): DuctForm {
+  const form = ductForm(ductWidthM, depthM);
+  if (profile === 'rectangle') return form;
+  const floorMean = (widthM: number, heightM: number): number =>
+    isotropicFloorMean(widthM - (Math.PI * heightM) / 2, heightM);
+  // d ln τ/d ln x by central differences: the error is of the order of the squared step, 1e-9.
+  const step = 1e-5;
+  const slope = (more: number, less: number): number =>
+    Math.log(more / less) / Math.log((1 + step) / (1 - step));
+  const byWidth = slope(
+    floorMean(ductWidthM * (1 + step), depthM),
+    floorMean(ductWidthM * (1 - step), depthM),
+  );
+  const byDepth = slope(
+    floorMean(ductWidthM, depthM * (1 + step)),
+    floorMean(ductWidthM, depthM * (1 - step)),
+  );
+  return {
+    ...form,
+    floorWidthM: ductWidthM - (Math.PI * depthM) / 2,
+    floorMean: floorMean(ductWidthM, depthM),
+    byWidth: { ...form.byWidth, floorMean: byWidth },
+    byDepth: { ...form.byDepth, floorMean: byDepth },
+  };
+}
 
 export interface IsotropicSection {
   /** Width (m) of the rectangle of the same depth and area. */

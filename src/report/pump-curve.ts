@@ -1,5 +1,5 @@
 import type { Network } from '../network/types.ts';
-import { ductForm } from '../physics/duct.ts';
+import { sectionForm } from '../physics/section.ts';
 import type { PumpLimitEntry, Window } from '../runsheet/types.ts';
 import type { FoundTarget } from '../solve/targets.ts';
 import { lineAt, settingsFor } from '../solve/targets-limits.ts';
@@ -153,7 +153,7 @@ function windowsOf(
   const text = `window of ${channel.name}`;
   if (entry.quantity === 'wall_shear' && settings.wallShear !== null) {
     // the least is asked of the mean, the most of the peak: both are shown as what the target would then read
-    const form = ductForm(channel.ductWidthMm / 1000, channel.depthMm / 1000);
+    const form = sectionForm(channel.profile, channel.ductWidthMm / 1000, channel.depthMm / 1000);
     const own = entry.at === 'mean' ? form.floorMean : form.floorPeak;
     const { min, max } = settings.wallShear;
     windows.push({
@@ -166,7 +166,7 @@ function windowsOf(
   }
   if (entry.quantity === 'residence_time' && settings.residenceTime !== null) {
     // the least is asked of the fastest fluid
-    const form = ductForm(channel.ductWidthMm / 1000, channel.depthMm / 1000);
+    const form = sectionForm(channel.profile, channel.ductWidthMm / 1000, channel.depthMm / 1000);
     const { min, max } = settings.residenceTime;
     windows.push({ window: { min: min === null ? null : min * form.peakOverMean, max }, text });
   }

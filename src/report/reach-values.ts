@@ -29,8 +29,11 @@ export function reachValues({ network, flow }: ReportedCase, quantity: MapQuanti
       case 'flow':
         return flowM3s;
       case 'shear': {
-        const { ductWidthMm, depthMm } = chip.channels[network.reachChannel[reach]];
-        return sectionOf(ductWidthMm / 1000, depthMm / 1000).floorMeanPa(flowM3s, chip.fluid.viscosityPaS);
+        const { profile, ductWidthMm, depthMm } = chip.channels[network.reachChannel[reach]];
+        return sectionOf(profile, ductWidthMm / 1000, depthMm / 1000).floorMeanPa(
+          flowM3s,
+          chip.fluid.viscosityPaS,
+        );
       }
       case 'residence': {
         const { ductWidthMm, depthMm } = chip.channels[network.reachChannel[reach]];

@@ -20,7 +20,7 @@ import type {
   ToolRow,
 } from './result-schema.ts';
 import { type Rows, rows } from './rows.ts';
-import { type Section, sectionCache } from './section-values.ts';
+import { sectionCache } from './section-values.ts';
 
 /** What one case adds: everything but tool, layout and run sheet. Keys and their order are those of the JSON document. */
 export interface CasePart {
@@ -186,12 +186,12 @@ function nodeRow(network: Network, flow: FlowState, node: number): NodeRow {
   };
 }
 
-type SectionOf = (widthM: number, depthM: number) => Section;
+type SectionOf = ReturnType<typeof sectionCache>;
 
 function reachRow(network: Network, flow: FlowState, reach: number, sectionOf: SectionOf): ReachRow {
   const { chip } = network;
   const channel = chip.channels[network.reachChannel[reach]];
-  const section = sectionOf(channel.ductWidthMm / 1000, channel.depthMm / 1000);
+  const section = sectionOf(channel.profile, channel.ductWidthMm / 1000, channel.depthMm / 1000);
   const lengthM = network.reachDuctMm[reach] / 1000;
   const jointM = network.reachJointMm[reach] / 1000;
   const flowM3s = flow.reachFlow[reach];
@@ -253,7 +253,7 @@ function segmentRow(network: Network, flow: FlowState, segment: number, sectionO
   const { chip } = network;
   const reach = network.segmentReach[segment];
   const channel = chip.channels[network.reachChannel[reach]];
-  const section = sectionOf(channel.ductWidthMm / 1000, channel.depthMm / 1000);
+  const section = sectionOf(channel.profile, channel.ductWidthMm / 1000, channel.depthMm / 1000);
   const ductMm = network.segmentDuctMm[segment];
   const flowM3s = flow.reachFlow[reach];
   const resistance = flow.reachResistance[reach] * (ductMm / network.reachDuctMm[reach]);

@@ -1,7 +1,8 @@
 import { deanNumber } from '../physics/dean.ts';
-import { type DuctForm, ductForm, floorShareInside, gradientOf, type ShearRange } from '../physics/duct.ts';
+import { type DuctForm, floorShareInside, gradientOf, type ShearRange } from '../physics/duct.ts';
 import { entranceLength } from '../physics/entrance.ts';
 import { reynoldsNumber } from '../physics/reynolds.ts';
+import { type Profile, sectionForm } from '../physics/section.ts';
 
 /** What one flow does in one cross-section. NaN where the section or the flow is unknown. */
 export interface DuctState {
@@ -33,10 +34,14 @@ export interface Section {
   readonly floorShareInside: (flowM3s: number, viscosityPaS: number, range: ShearRange) => number;
 }
 
-/** Sections by width and depth, each computed at its first use: a chip has thousands of reaches and a handful of sections. */
-export function sectionCache(): (widthM: number, depthM: number) => Section {
-  const byWidth = new Map<number, Map<number, Section>>();
-  return (widthM, depthM) => {
+/** Sections by profile, width and depth, each computed at its first use: a chip has thousands of reaches and a handful of sections. */
+export function sectionCache(): (profile: Profile, widthM: number, depthM: number) => Section {
+  const caches = { rectangle: new Map(), isotropic: new Map() } as Record<
+    Profile,
+    Map<number, Map<number, Section>>
+  >; // both empty
+  return (profile, widthM, depthM) => {
+    const byWidth = caches[profile];
     let byDepth = byWidth.get(widthM);
     if (byDepth === undefined) {
       byDepth = new Map();
@@ -44,7 +49,7 @@ export function sectionCache(): (widthM: number, depthM: number) => Section {
     }
     let section = byDepth.get(depthM);
     if (section === undefined) {
-      section = widthM > 0 && depthM > 0 ? sectionOf(ductForm(widthM, depthM)) : UNKNOWN_SECTION;
+      section = widthM > 0 && depthM > 0 ? sectionOf(sectionForm(profile, widthM, depthM)) : UNKNOWN_SECTION;
       byDepth.set(depthM, section);
     }
     return section;

@@ -565,17 +565,28 @@ const accept = changed(
     // ruleName lets only rules of the table through.
     const measure = RULE_MEASURES.get(rule)!;
     const upTo = ceiling(rule, measure, up_to);
-    if (upTo !== null && typeof upTo === 'object') return upTo;
-    return { rule, at, upTo, because, by, on };
+    if (upTo !== null && 'message' in upTo) return upTo;
+    const common = { rule, at, because, by, on };
+    return upTo === null ? { ...common, upTo: null } : { ...common, upTo: upTo.value, upToUnit: upTo.unit };
   },
   isComplaint,
 );
+
+/** SI unit in which findings measure a quantity; shares and ratios have none. */
+const SI_UNIT: Readonly<Partial<Record<Quantity, string>>> = {
+  length: 'm',
+  pressure: 'Pa',
+  wall_shear: 'Pa',
+  time: 's',
+  flow: 'm³/s',
+  angle: 'rad',
+};
 
 function ceiling(
   rule: string,
   { quantities, ceilingNeeded }: RuleMeasure,
   written: string | undefined,
-): number | null | Complaint {
+): { readonly value: number; readonly unit: string } | null | Complaint {
   const first = quantities[0];
   if (written === undefined) {
     if (!ceilingNeeded || first === undefined) return null;
@@ -588,7 +599,7 @@ function ceiling(
   let complaint: Complaint | null = null;
   for (const kind of quantities) {
     try {
-      return parseQuantity(written, kind);
+      return { value: parseQuantity(written, kind), unit: SI_UNIT[kind] ?? '' };
     } catch (error) {
       if (!(error instanceof QuantityError)) throw error;
       complaint ??= { message: error.message, key: 'up_to' };

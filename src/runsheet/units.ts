@@ -80,7 +80,7 @@ const SIZES: Readonly<Record<Quantity, readonly [number, number]>> = {
   length: [1e-12, 1e4],
   pressure: [1e-12, 1e12],
   wall_shear: [1e-12, 1e12],
-  flow: [1e-30, 1e3],
+  flow: [1e-30, 1e6],
   time: [1e-12, 1e15],
   velocity: [1e-18, 1e6],
   viscosity: [1e-9, 1e9],

@@ -2,10 +2,10 @@
  * One straight duct without a layout: of flow, pressure drop and mean wall shear one is given and the others follow.
  * Exact for developed laminar flow; see physics/duct.ts. Beside it what parallel plates as far apart as the shorter side, and as wide as the longer, would have.
  */
-import { ductForm, gradientOf } from '../physics/duct.ts';
+import { gradientOf } from '../physics/duct.ts';
 import { entranceLength } from '../physics/entrance.ts';
 import { reynoldsNumber } from '../physics/reynolds.ts';
-import { isotropicSection } from '../physics/section.ts';
+import { isotropicSection, sectionForm } from '../physics/section.ts';
 
 export type Given =
   | { readonly kind: 'flow'; readonly flowM3s: number }
@@ -57,7 +57,7 @@ export function computeSection(input: SectionInput): SectionState {
   refuse('viscosity', viscosityPaS);
   refuse('density', densityKgM3);
   const ductWidthM = profile === 'isotropic' ? isotropicSection(widthM, depthM).ductWidthM : widthM;
-  const form = ductForm(ductWidthM, depthM);
+  const form = sectionForm(profile, ductWidthM, depthM);
   const resistance = viscosityPaS * form.resistance * lengthM;
   const flowM3s = flowOf(given);
   refuse('flow that follows', flowM3s);

@@ -1,6 +1,6 @@
 import { InputError } from '../errors.ts';
 import type { Network } from '../network/types.ts';
-import { ductForm } from '../physics/duct.ts';
+import { sectionForm } from '../physics/section.ts';
 import { nearest } from '../runsheet/nearest.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { RunSheet, TargetEntry } from '../runsheet/types.ts';
@@ -225,7 +225,7 @@ function measureOf(
 ): Measure {
   if (observed.kind !== 'reach' || quantity === 'flow' || quantity === 'pressure') return { kind: 'signed' };
   const { chip } = network;
-  const { ductWidthMm, depthMm, name } = chip.channels[network.reachChannel[observed.reach]];
+  const { ductWidthMm, depthMm, profile, name } = chip.channels[network.reachChannel[observed.reach]];
   if (!(ductWidthMm > 0 && depthMm > 0)) {
     refuseTarget(
       sheet,
@@ -233,7 +233,7 @@ function measureOf(
       `the depth of channel ${quote(name)} is not known, so nothing in it can be computed; give its layer a depth`,
     );
   }
-  const form = ductForm(ductWidthMm / 1000, depthMm / 1000);
+  const form = sectionForm(profile, ductWidthMm / 1000, depthMm / 1000);
   switch (quantity) {
     case 'wall_shear': {
       // τ = (τ/G) G with G = µ (R/µL) Q

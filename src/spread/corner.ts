@@ -23,6 +23,7 @@ export interface WorstCorner {
  */
 export function worstCorner(
   model: SpreadModel,
+  causes: number,
   outputs: readonly Output[],
   nominal: Float64Array,
   linearSd: Float64Array,
@@ -55,11 +56,11 @@ export function worstCorner(
     ...found,
     value,
     isKept: isKept({ ...outputs[found.output], [found.side === 'min' ? 'max' : 'min']: null }, value),
-    signs: signsOf(model, x),
+    signs: signsOf(model, x, causes),
   };
 }
 
-function signsOf({ variables }: SpreadModel, x: Float64Array): (1 | -1 | 0)[] {
+function signsOf({ variables }: SpreadModel, x: Float64Array, causes: number): (1 | -1 | 0)[] {
   const signs: (1 | -1 | 0 | null)[] = [];
   variables.forEach(({ cause }, k) => {
     if (x[k] === 0) return;
@@ -67,6 +68,5 @@ function signsOf({ variables }: SpreadModel, x: Float64Array): (1 | -1 | 0)[] {
     const before = signs[cause];
     signs[cause] = before === undefined || before === null || before === sign ? sign : 0;
   });
-  const causes = 1 + Math.max(-1, ...variables.map(({ cause }) => cause));
   return Array.from({ length: causes }, (_, cause) => signs[cause] ?? 0);
 }

@@ -1,8 +1,9 @@
 /**
  * First-order spread (JCGM 100:2008, 5.1.2): u²(y) = Σ_k (∂y/∂x_k)² u²(x_k) over independent x_k.
  * Derivatives are exact: of flows and pressures by the adjoint network (solve/sensitivity.ts), of duct resistance, shear and peak
- * velocity by the derivatives of their series (physics/duct.ts); only that of viscosity and density by temperature is a difference
- * quotient of fourth order. Cost: one more solve with the nominal factor for each flow or pressure, and O(reaches + channels) sums.
+ * velocity by the derivatives of their series (physics/duct.ts). Only two are difference quotients: that of viscosity and density by
+ * temperature (fourth order), and that of the mean shear on an etched floor (physics/section.ts).
+ * Cost: one more solve with the nominal factor for each flow or pressure, and O(reaches + channels) sums.
  */
 import { GRAVITY_M_S2 } from '../physics/constants.ts';
 import type { DuctFactors, DuctForm } from '../physics/duct.ts';
@@ -159,7 +160,7 @@ function logDerivatives({ chip, variables, sections }: SpreadModel): LogDerivati
     if (fluid.densityAt !== undefined) density[k] = slopeAt(fluid.densityAt, fluid.temperatureK);
   });
   const ofSection = sections.section.map((section): SectionLog[] => {
-    const { drawnWidthM, ductWidthM, depthM, isotropic, depthVariable, maskVariable, ownVariable } = section;
+    const { drawnWidthM, ductWidthM, depthM, profile, depthVariable, maskVariable, ownVariable } = section;
     const logs: SectionLog[] = [];
     for (const k of [maskVariable, ownVariable]) {
       if (k >= 0)
@@ -167,7 +168,7 @@ function logDerivatives({ chip, variables, sections }: SpreadModel): LogDerivati
     }
     if (depthVariable >= 0) {
       const deeper = sizeOf(variables[depthVariable], 1, depthM);
-      const undercut = isotropic ? (Math.PI * deeper) / 2 : 0;
+      const undercut = profile === 'isotropic' ? (Math.PI * deeper) / 2 : 0;
       logs.push({ variable: depthVariable, byWidth: undercut / ductWidthM, byDepth: deeper / depthM });
     }
     return logs;
@@ -198,7 +199,7 @@ type GradientRow = (gradient: Gradient) => Float64Array;
 
 /** From a gradient by resistances, pressures and injections to one by x: the chain rule, all edges summed by section first. */
 function gradientRows(model: SpreadModel, logs: LogDerivatives): GradientRow {
-  const { chip, network, variables, drives, sections, factor, balancedBy, nominalState } = model;
+  const { chip, network, variables, drives, sections, factor, balancedBy, holder, nominalState } = model;
   const { reachCount, reachChannel } = network;
   const { driveNode, tubingEdge } = factor.prepared;
   const { resistance } = factor.graphFactor;
@@ -207,7 +208,6 @@ function gradientRows(model: SpreadModel, logs: LogDerivatives): GradientRow {
     sectionForm[s] = nominalState.form[c];
   });
   const tubing = tubingDerivatives(model, logs);
-  const holder = holdersOf(model);
   const bySection = new Float64Array(sections.section.length);
 
   return (gradient) => {
@@ -243,7 +243,7 @@ function gradientRows(model: SpreadModel, logs: LogDerivatives): GradientRow {
     variables.forEach((variable, k) => {
       if (variable.kind === 'pressure') {
         const node = driveNode[variable.port];
-        if (drives[variable.port].kind !== 'pressure' || holder.get(node) !== variable.port) return;
+        if (holder[variable.port] !== variable.port) return;
         row[k] += known(gradient.pressure[node]) * sizeOf(variable, 1, pressureOf(variable.port));
       }
       if (variable.kind === 'flow') {
@@ -259,7 +259,7 @@ function gradientRows(model: SpreadModel, logs: LogDerivatives): GradientRow {
     });
     chip.ports.forEach(({ condition }, p) => {
       const node = driveNode[p];
-      if (condition.kind !== 'head' || holder.get(node) !== p) return;
+      if (condition.kind !== 'head' || holder[p] !== p) return;
       const byDensity = known(gradient.pressure[node]) * GRAVITY_M_S2 * condition.headM;
       if (byDensity === 0) return;
       for (let k = 0; k < row.length; k++) row[k] += byDensity * logs.density[k];
@@ -270,15 +270,6 @@ function gradientRows(model: SpreadModel, logs: LogDerivatives): GradientRow {
     const drive = drives[port];
     return drive.kind === 'pressure' ? drive.pressurePa : 0;
   }
-}
-
-/** The first port that holds each node at a pressure. */
-function holdersOf({ factor, drives }: SpreadModel): ReadonlyMap<number, number> {
-  const holder = new Map<number, number>();
-  factor.prepared.driveNode.forEach((node, port) => {
-    if (drives[port].kind === 'pressure' && !holder.has(node)) holder.set(node, port);
-  });
-  return holder;
 }
 
 /** ∂R/∂x of each port's tubing. */

@@ -7,7 +7,8 @@
 import type { Chip } from '../chip/types.ts';
 import type { Network } from '../network/types.ts';
 import { GRAVITY_M_S2 } from '../physics/constants.ts';
-import { type DuctForm, ductForm } from '../physics/duct.ts';
+import type { DuctForm } from '../physics/duct.ts';
+import { type Profile, sectionForm } from '../physics/section.ts';
 import { tubeResistance } from '../physics/tube.ts';
 import { drivesOf, type PortDrive } from '../solve/drives.ts';
 import {
@@ -47,6 +48,8 @@ export interface SpreadModel {
   readonly nominalState: ChipState;
   /** Of each port that is given a flow in a part without a pressure, the port of its part that takes what the others leave; else −1. */
   readonly balancedBy: Int32Array;
+  /** Of each port that is held at a pressure, the first one that holds its node, which speaks for it; else −1. */
+  readonly holder: Int32Array;
   /** The state at x, one number per variable; null where nothing can be computed: a width, depth, bore or viscosity that is not above 0, or a temperature that no data cover. */
   readonly at: (x: Float64Array) => ChipState | null;
 }
@@ -66,7 +69,8 @@ export function prepareModel(
   const nominal = flowStateOf(factor, drives);
   const balancedBy = balancingPorts(factor, drives);
   const sections = gatherSections(chip, variables);
-  const at = evaluator({ network, variables, drives, factor, balancedBy, sections });
+  const holder = holdersOf(factor.prepared.driveNode, drives);
+  const at = evaluator({ network, variables, drives, factor, balancedBy, sections, holder });
   const nominalState = at(new Float64Array(variables.length));
   if (nominalState === null) throw new RangeError('the chip itself can not be computed');
   return {
@@ -79,6 +83,7 @@ export function prepareModel(
     nominal,
     nominalState: ownState(nominalState),
     balancedBy,
+    holder,
     at,
   };
 }
@@ -124,7 +129,7 @@ export interface Section {
   readonly drawnWidthM: number;
   readonly ductWidthM: number;
   readonly depthM: number;
-  readonly isotropic: boolean;
+  readonly profile: Profile;
   /** Variables that move it, −1 for none. */
   readonly depthVariable: number;
   readonly maskVariable: number;
@@ -147,7 +152,7 @@ function gatherSections({ channels }: Chip, variables: readonly Variable[]): Sec
       drawnWidthM: channel.drawnWidthMm / 1000,
       ductWidthM: channel.ductWidthMm / 1000,
       depthM: channel.depthMm / 1000,
-      isotropic: channel.profile === 'isotropic',
+      profile: channel.profile,
       depthVariable: depthOfLayer.get(channel.layer) ?? -1,
       maskVariable,
       ownVariable: ownOfChannel.get(c) ?? -1,
@@ -164,10 +169,13 @@ function gatherSections({ channels }: Chip, variables: readonly Variable[]): Sec
   return { ofChannel, section };
 }
 
-type Parts = Pick<SpreadModel, 'network' | 'variables' | 'drives' | 'factor' | 'balancedBy' | 'sections'>;
+type Parts = Pick<
+  SpreadModel,
+  'network' | 'variables' | 'drives' | 'factor' | 'balancedBy' | 'sections' | 'holder'
+>;
 
 function evaluator(parts: Parts): SpreadModel['at'] {
-  const { network, variables, drives, factor, balancedBy, sections } = parts;
+  const { network, variables, drives, factor, balancedBy, sections, holder } = parts;
   const { chip, reachCount, reachChannel, reachDuctMm, portNode } = network;
   const { fluid, channels, ports } = chip;
   const { driveNode, tubingEdge, graph } = factor.prepared;
@@ -179,7 +187,6 @@ function evaluator(parts: Parts): SpreadModel['at'] {
   const portVariables = variables.flatMap((variable, k) =>
     variable.kind === 'pressure' || variable.kind === 'flow' ? [{ ...variable, k }] : [],
   );
-  const holder = holdersOf(driveNode, drives);
   const nominalLoad = loadOf(factor, drives);
   const pieceViscosity = ports.map(({ tubing }) =>
     tubing.map(({ temperatureK }) => (temperatureK === null ? null : fluid.viscosityAt(temperatureK))),
@@ -273,14 +280,19 @@ function formAt(
   variables: readonly Variable[],
   x: Float64Array,
 ): DuctForm | null | 'closed' {
-  const { drawnWidthM, ductWidthM, depthM, isotropic, depthVariable, maskVariable, ownVariable } = section;
+  const { drawnWidthM, ductWidthM, depthM, profile, depthVariable, maskVariable, ownVariable } = section;
   if (Number.isNaN(ductWidthM) || Number.isNaN(depthM)) return null;
   let wider = 0;
   for (const k of [maskVariable, ownVariable]) if (k >= 0) wider += sizeOf(variables[k], x[k], drawnWidthM);
   const deeper = depthVariable < 0 ? 0 : sizeOf(variables[depthVariable], x[depthVariable], depthM);
-  if (!(drawnWidthM + wider > 0 && depthM + deeper > 0)) return 'closed';
-  const undercut = isotropic ? (Math.PI * deeper) / 2 : 0;
-  return ductForm(ductWidthM + wider + undercut, depthM + deeper);
+  if (profile === 'rectangle') {
+    const [width, depth] = [ductWidthM + wider, depthM + deeper];
+    return width > 0 && depth > 0 ? sectionForm(profile, width, depth) : 'closed';
+  }
+  const depth = depthM + deeper;
+  const width = ductWidthM + wider + (Math.PI * deeper) / 2;
+  // what is left for the mask, as the form computes it
+  return depth > 0 && width - (Math.PI * depth) / 2 > 0 ? sectionForm(profile, width, depth) : 'closed';
 }
 
 function fluidAt(

@@ -71,7 +71,14 @@ export async function spreadOf(
     unknownWindows: judge.unknownWindows,
     unknownLimits: judge.unknownLimits,
     turbulent: judge.turbulent(),
-    corner: worstCorner(model, outputs.slice(0, followed), nominal, linear.sd, linear.derivatives),
+    corner: worstCorner(
+      model,
+      causes.length,
+      outputs.slice(0, followed),
+      nominal,
+      linear.sd,
+      linear.derivatives,
+    ),
   };
 }
 

@@ -42,7 +42,7 @@ export function rootScale(get: (name: string) => string | undefined): RootScale 
   const scale = readScale(get);
   if (scale.unitMm >= SMALLEST_UNIT_MM && scale.unitMm <= LARGEST_UNIT_MM) return scale;
   throw new ValueError(
-    `a unit of the drawing would be ${scale.unitMm} mm (${scale.unitReason}); give it the width, height and viewBox of a chip`,
+    `a unit of the drawing would be far from the size of any chip (${scale.unitReason}); set width, height and viewBox, for example "76mm", "26mm" and "0 0 76 26"`,
   );
 }
 

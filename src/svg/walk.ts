@@ -352,10 +352,7 @@ class Walk {
   #visit(count: number, element: XmlElement): void {
     this.#visits += count;
     if (this.#visits > MAX_ELEMENTS) {
-      throw this.#fault(
-        element,
-        `the drawing has more than ${MAX_ELEMENTS} elements (the limit); split it`,
-      );
+      throw this.#fault(element, `the drawing has more than ${MAX_ELEMENTS} elements (the limit); split it`);
     }
   }
 

@@ -11,7 +11,7 @@ import type { Matrix, Shape, SvgDrawing } from '../../src/svg/types.ts';
 import { hasChromium, openBrowser, WINDOW_PX } from './chromium.ts';
 import { type BrowserShape, measureFile } from './measure.ts';
 
-const CORPUS = join(import.meta.dirname, '../corpus');
+const CORPUS = join(import.meta.dirname, '../corpus/fixtures');
 
 const AGREE = 1e-4;
 

@@ -1,5 +1,5 @@
 /**
- * The drawings of this folder, read and checked. Beside a drawing may lie
+ * The drawings of fixtures/, read and checked. Beside a drawing may lie
  * - `NAME.run.yaml` and `NAME.expected.json`: its channels (name → width in mm), ports (name → diameter in mm), what was
  *   counted as ignored, and findings that must be there, each with words that its fix must hold;
  * - `NAME.error.txt`: the whole message with which it is refused.
@@ -18,13 +18,15 @@ interface Expected {
   readonly finds: readonly { readonly rule: string; readonly name: string; readonly fix: string }[];
 }
 
-const names = readdirSync(import.meta.dirname, { recursive: true, encoding: 'utf8' })
+const FIXTURES = join(import.meta.dirname, 'fixtures');
+
+const names = readdirSync(FIXTURES, { recursive: true, encoding: 'utf8' })
   .filter((name) => name.endsWith('.svg'))
   .map((name) => name.slice(0, -'.svg'.length))
   .sort();
 
-const textOf = (name: string): string => readFileSync(join(import.meta.dirname, name), 'utf8');
-const has = (name: string): boolean => existsSync(join(import.meta.dirname, name));
+const textOf = (name: string): string => readFileSync(join(FIXTURES, name), 'utf8');
+const has = (name: string): boolean => existsSync(join(FIXTURES, name));
 
 describe('what is drawn is read right, refused with a way out, or counted', () => {
   it.each(names.filter((name) => has(`${name}.expected.json`)))('%s', async (name) => {

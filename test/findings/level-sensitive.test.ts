@@ -55,14 +55,15 @@ describe('level-sensitive', () => {
 
   it('measures the same behind tubing, by either way of computing it', () => {
     const one = {
-      ...PORTS,
       a: '{ pressure: 600 Pa }',
+      b: '{ head: 80 mm, tubing: { bore: 0.1 mm, length: 300 mm } }',
+      c: PORTS.c,
       out: '{ pressure: -100 Pa }',
-      drain: '{ head: 0 mm }',
+      drain: 'sealed',
     };
     const after = [
-      { ...one, c: PORTS.c.replace('30', '35') },
-      { ...one, drain: '{ head: 5 mm }' },
+      { ...one, b: one.b.replace('80', '85') },
+      { ...one, c: one.c.replace('30', '35') },
     ].map((ports) => Math.abs(flowOf('in-3', ports) / flowOf('in-3', one) - 1));
     for (const windowed of [['in-3'], ['in-3', 'lane', 'in-1', 'in-2']]) {
       const [finding] = levelFindings(one, windowed).filter(({ names }) => names[0] === 'in-3');

@@ -51,6 +51,18 @@ describe('factorDense', () => {
     expect(factor.share[2]).toBeCloseTo(-factor.share[0], 12);
   });
 
+  it('does not name a row that has part in it by rounding only', () => {
+    const [a, b] = [
+      [0.31, 0.72, 0.13, 0.94],
+      [0.55, 0.26, 0.87, 0.38],
+    ];
+    const sum = a.map((value, j) => value / 3 + b[j] / 7);
+    const factor = factorDense([a, b, [0.91, 0.32, 0.63, 0.14], sum]);
+    expect(factor.kind).toBe('dependent');
+    if (factor.kind !== 'dependent') return;
+    expect(Array.from(factor.share, (value) => value !== 0)).toEqual([true, true, false, true]);
+  });
+
   it('finds a row of noughts dependent by itself', () => {
     const factor = factorDense([
       [1, 0],

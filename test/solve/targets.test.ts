@@ -117,6 +117,20 @@ describe('findSettings', () => {
     expect(rel(targets[2].reached, 700)).toBeLessThan(1e-12);
   });
 
+  it('counts as room for a residence time what a joint adds as resistance not', () => {
+    const svg = drawing({ main: 'M5 10H50', side: 'M25 10V30' }, { a: [5, 10], b: [50, 10], c: [25, 30] });
+    const network = networkFrom(
+      svg,
+      'depth: 80 um\nports: { a: open, b: open, c: open }\ntargets:\n  - { channel: side, residence_time: 4 s, by: c }',
+    );
+    const { flow, targets } = findSettings(network);
+    const [reach] = [0, 1, 2].filter((r) => network.reachName(r) === 'side');
+    expect(network.reachJointMm[reach]).not.toBe(0);
+    const room = (network.reachDuctMm[reach] - network.reachJointMm[reach]) / 1e3;
+    expect(rel((0.2e-3 * 80e-6 * room) / Math.abs(flow.reachFlow[reach]), 4)).toBeLessThan(1e-12);
+    expect(rel(targets[0].reached, 4)).toBeLessThan(1e-12);
+  });
+
   describe('of a window', () => {
     const sheet = (value: string, limits = ''): string =>
       bridge(

@@ -233,7 +233,7 @@ describe('use, symbol, nested svg, switch', () => {
       const level = (i: number) => `<g id="g${i + 1}"><use href="#g${i}"/><use href="#g${i}"/></g>`;
       const levels = Array.from({ length: 40 }, (_, i) => level(i)).join('');
       expect(() => shapesOf(`<defs><g id="g0">${last}</g>${levels}</defs><use href="#g40"/>`)).toThrow(
-        'more than 2000000 elements once every use is followed (the limit)',
+        'more than 500000 elements that use draws again (the limit)',
       );
     },
     120_000,

@@ -1,4 +1,4 @@
-import { ductForm } from '../../physics/duct.ts';
+import { sectionForm } from '../../physics/section.ts';
 import { formatNumber, type Show } from '../quantity.ts';
 import { reachesThatMatter } from '../reach-values.ts';
 import type { ReportedCase } from '../report.ts';
@@ -145,8 +145,8 @@ function writeBalance({ paper, one }: PageContext, section: Element): void {
 }
 
 function writeDepth({ paper, one }: PageContext, section: Element, row: Checked): void {
-  const { byDepth, byWidth } = ductForm(row.width_m, row.depth_m);
   const channel = one.network.chip.channels.find(({ name }) => name === row.channel);
+  const { byDepth, byWidth } = sectionForm(channel?.profile ?? 'rectangle', row.width_m, row.depth_m);
   // isotropic: width = mask + π·depth/2, so the width grows with the depth
   const follow = channel?.profile === 'isotropic' ? ((Math.PI / 2) * row.depth_m) / row.width_m : 0;
   const resistance = byDepth.resistance + follow * byWidth.resistance;
