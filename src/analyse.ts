@@ -1,6 +1,9 @@
 import { assembleChip } from './chip/assemble.ts';
 import type { Chip } from './chip/types.ts';
 import { findAll } from './findings/check.ts';
+import { pumpLimitRule } from './findings/pump-limit.ts';
+import type { Rule } from './findings/rule.ts';
+import { RULES } from './findings/rules.ts';
 import type { FindingReport } from './findings/types.ts';
 import type { Layout } from './layout/types.ts';
 import { buildNetwork } from './network/build.ts';
@@ -9,6 +12,7 @@ import type { RunSheet } from './runsheet/types.ts';
 import { drivesOf } from './solve/drives.ts';
 import { factorFlow, flowStateOf, kindsOf, prepareFlow } from './solve/flow-state.ts';
 import { centrelineFlow, jointFlowShares } from './solve/joint-share.ts';
+import { type FoundSettings, findSettings } from './solve/targets.ts';
 import type { FlowState } from './solve/types.ts';
 
 /** A layout under one run sheet (or one of its cases), joined, solved and judged. */
@@ -43,18 +47,48 @@ export async function analyse(input: AnalysisInput, onStage: OnStage = async () 
   const chip = assembleChip(input);
   await onStage('joining channels');
   const network = buildNetwork(chip);
+  return judge(network, RULES, onStage);
+}
+
+/**
+ * The same with the settings that meet the run sheet's targets found first, and the chip judged at those settings.
+ *
+ * Errors: InputError as analyse; and where the targets can't be met, at the target's line.
+ */
+export async function analysePump(
+  input: AnalysisInput,
+  onStage: OnStage = async () => {},
+): Promise<{ readonly analysis: Analysis; readonly settings: FoundSettings }> {
+  const drawn = assembleChip(input);
+  await onStage('joining channels');
+  const joined = buildNetwork(drawn);
+  await onStage('finding settings');
+  const settings = findSettings(joined);
+  const ports = drawn.ports.map((port, i) => ({ ...port, condition: settings.conditions[i] }));
+  const network = { ...joined, chip: { ...drawn, ports } };
+  const rules = RULES.map((rule) => (rule.names.includes('pump-limit') ? pumpLimitRule(settings) : rule));
+  return { analysis: await judge(network, rules, onStage, settings.flow), settings };
+}
+
+/** Solves a network (unless its flow is known already) and runs the rules on it. */
+async function judge(
+  network: Network,
+  rules: readonly Rule[],
+  onStage: OnStage,
+  known?: FlowState,
+): Promise<Analysis> {
+  const { chip } = network;
   await onStage('solving flows');
   const drives = drivesOf(chip);
   const factor = factorFlow(prepareFlow(network), kindsOf(drives));
-  const flow = flowStateOf(factor, drives);
+  const flow = known ?? flowStateOf(factor, drives);
   const jointFlowShare = jointFlowShares(network, factor, drives, flow);
   await onStage('checking rules');
-  const findings = findAll({ chip, network, flow });
   return {
     chip,
     network,
     flow,
-    findings,
+    findings: findAll({ chip, network, flow }, rules),
     jointFlowShare,
     centrelineFlow: () => centrelineFlow(network, factor, drives),
   };

@@ -3,7 +3,7 @@
  *
  *   readSvg → layOut → assembleChip (with parseRunSheet) → buildNetwork → solveFlow → findAll → buildReport → writers
  */
-export { type Analysis, type AnalysisInput, analyse, type OnStage } from './analyse.ts';
+export { type Analysis, type AnalysisInput, analyse, analysePump, type OnStage } from './analyse.ts';
 export { assembleChip } from './chip/assemble.ts';
 export type {
   Channel,
@@ -17,6 +17,7 @@ export type {
 } from './chip/types.ts';
 export { run } from './cli.ts';
 export type { Io } from './commands/io.ts';
+export { draftRunSheet } from './draft/draft.ts';
 export { InputError } from './errors.ts';
 export { findAll } from './findings/check.ts';
 export type { Finding, FindingReport, NotRun, Severity } from './findings/types.ts';
@@ -33,7 +34,9 @@ export { svgPicture } from './report/svg.ts';
 export { terminalSummary } from './report/terminal.ts';
 export { parseRunSheet } from './runsheet/parse.ts';
 export type { RunSheet } from './runsheet/types.ts';
+export { computeSection } from './section/section.ts';
 export { solveFlow } from './solve/flow-state.ts';
+export { type FoundSettings, findSettings } from './solve/targets.ts';
 export type { FlowPart, FlowState } from './solve/types.ts';
 export { readSvg } from './svg/read.ts';
 export type { SvgDrawing } from './svg/types.ts';

@@ -1,21 +1,12 @@
-import type { Analysis, AnalysisInput, OnStage } from '../analyse.ts';
-import { analyse } from '../analyse.ts';
-import { assembleChip } from '../chip/assemble.ts';
+import { type Analysis, type AnalysisInput, analyse, analysePump, type OnStage } from '../analyse.ts';
 import { InputError } from '../errors.ts';
-import { findAll } from '../findings/check.ts';
-import { pumpLimitRule } from '../findings/pump-limit.ts';
-import { RULES } from '../findings/rules.ts';
 import { layOut } from '../layout/layout.ts';
-import { buildNetwork } from '../network/build.ts';
 import { pumpPartOf } from '../report/pump-part.ts';
 import { pumpText } from '../report/pump-text.ts';
 import type { Report } from '../report/report.ts';
 import { terminalSummary } from '../report/terminal.ts';
 import { parseRunSheet } from '../runsheet/parse.ts';
-import { drivesOf } from '../solve/drives.ts';
-import { factorFlow, kindsOf, prepareFlow } from '../solve/flow-state.ts';
-import { centrelineFlow, jointFlowShares } from '../solve/joint-share.ts';
-import { type FoundSettings, findSettings } from '../solve/targets.ts';
+import type { FoundSettings } from '../solve/targets.ts';
 import { readSvg } from '../svg/read.ts';
 import { casesOf, type SheetCase, toReport } from './cases.ts';
 import { EXIT_HOLD, EXIT_READY } from './check.ts';
@@ -72,40 +63,6 @@ async function analyseCase(input: AnalysisInput, onStage: OnStage): Promise<Pump
   if (input.sheet === null || input.sheet.targets.length === 0)
     return { analysis: await analyse(input, onStage), settings: null };
   return analysePump(input, onStage);
-}
-
-/**
- * Layout × RunSheet → Chip → Network → settings → the chip at those settings: flow state and findings.
- *
- * Errors: InputError as analyse; and where the targets can't be met, at the target's line.
- */
-export async function analysePump(
-  input: AnalysisInput,
-  onStage: OnStage = async () => {},
-): Promise<{ readonly analysis: Analysis; readonly settings: FoundSettings }> {
-  const drawn = assembleChip(input);
-  await onStage('joining channels');
-  const joined = buildNetwork(drawn);
-  await onStage('finding settings');
-  const settings = findSettings(joined);
-  const { flow, conditions } = settings;
-  const chip = { ...drawn, ports: drawn.ports.map((port, i) => ({ ...port, condition: conditions[i] })) };
-  const network = { ...joined, chip };
-  const drives = drivesOf(chip);
-  const factor = factorFlow(prepareFlow(network), kindsOf(drives));
-  const jointFlowShare = jointFlowShares(network, factor, drives, flow);
-  await onStage('checking rules');
-  const rules = RULES.map((rule) => (rule.names.includes('pump-limit') ? pumpLimitRule(settings) : rule));
-  const findings = findAll({ chip, network, flow }, rules);
-  const analysis: Analysis = {
-    chip,
-    network,
-    flow,
-    findings,
-    jointFlowShare,
-    centrelineFlow: () => centrelineFlow(network, factor, drives),
-  };
-  return { analysis, settings };
 }
 
 function toPumpReport(cases: readonly PumpedCase[], layoutFile: string): Report {

@@ -291,9 +291,12 @@ function formAt(
   }
   const depth = depthM + deeper;
   const width = ductWidthM + wider + (Math.PI * deeper) / 2;
-  // what is left for the mask, as the form computes it
-  return depth > 0 && width - (Math.PI * depth) / 2 > 0 ? sectionForm(profile, width, depth) : 'closed';
+  const opening = width - (Math.PI * depth) / 2;
+  return depth > 0 && opening > LEAST_OPENING * width ? sectionForm(profile, width, depth) : 'closed';
 }
+
+/** A mask whose opening is a smaller share of the duct than this lets nothing etch; the form's difference quotients need more too. */
+const LEAST_OPENING = 1e-4;
 
 function fluidAt(
   { fluid }: Chip,
