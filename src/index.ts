@@ -38,6 +38,7 @@ export { computeSection } from './section/section.ts';
 export { solveFlow } from './solve/flow-state.ts';
 export { type FoundSettings, findSettings } from './solve/targets.ts';
 export type { FlowPart, FlowState } from './solve/types.ts';
+export { spreadOf } from './spread/spread.ts';
 export { readSvg } from './svg/read.ts';
 export type { SvgDrawing } from './svg/types.ts';
 export { VERSION } from './version.ts';

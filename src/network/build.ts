@@ -168,6 +168,9 @@ function toNetwork(
         endFate[end] = fateOf(draft, kept, end);
         if (endFate[end] === 'left out' || !hasArcs || pieces.centrelineClosed[c] === 1) continue;
         endNode[end] = end === 2 * c ? arcNodeFrom[firstArc[c]] : arcNodeTo[firstArc[c + 1] - 1];
+        // Another channel's end may have been carried on to this one.
+        const meetsOthers = endNode[end] >= 0 && NODE_KINDS[nodeKind[endNode[end]]] !== 'end';
+        if (endFate[end] === 'open' && meetsOthers) endFate[end] = 'joined';
       }
     }
     const byNode = stopsByNode(draft, stops, kept.from, kept.to);

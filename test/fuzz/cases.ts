@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { readSeeds } from './corpus.ts';
-import { drawing, runSheet } from './drawings.ts';
+import { chip, drawing, runSheet } from './drawings.ts';
 import { changed, changes } from './mutate.ts';
 
 /** Files of a folder and a command line on them. */
@@ -31,6 +31,7 @@ const files: fc.Arbitrary<FuzzCase['files']> = fc.oneof(
       .tuple(drawing, runSheet)
       .map(([svg, sheet]) => ({ 'chip.svg': svg, 'chip.run.yaml': sheet })),
   },
+  { weight: 6, arbitrary: chip.map(({ svg, sheet }) => ({ 'chip.svg': svg, 'chip.run.yaml': sheet })) },
   fc.tuple(drawing, seed).map(([svg, { sheet }]) => ({ 'chip.svg': svg, 'chip.run.yaml': sheet })),
   fc.tuple(seed, runSheet).map(([{ svg }, sheet]) => ({ 'chip.svg': svg, 'chip.run.yaml': sheet })),
   fc.uint8Array({ maxLength: 200 }).map((bytes) => ({ 'chip.svg': bytes })),

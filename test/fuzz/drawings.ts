@@ -165,3 +165,41 @@ export const runSheet: fc.Arbitrary<string> = fc
     const list = ports.map(([id, set]) => `  ${id}: ${set}\n`).join('');
     return `${lines.join('\n')}\n${list === '' ? '' : `ports:\n${list}`}`;
   });
+
+/** A drawing whose ports and channels have names of their own, and a run sheet that says something about some of them. */
+export const chip: fc.Arbitrary<{ readonly svg: string; readonly sheet: string }> = fc
+  .record({
+    paths: fc.array(
+      fc.tuple(place, place, fc.array(command, { minLength: 1, maxLength: 4 }), width, transform),
+      {
+        minLength: 1,
+        maxLength: 6,
+      },
+    ),
+    wells: fc.array(fc.tuple(place, place, fc.constantFrom(0.5, 1, 1, 2.5)), { minLength: 1, maxLength: 5 }),
+    others: fc.array(other, { maxLength: 2 }),
+    isAtEnds: fc.boolean(),
+    conditions: fc.array(condition, { minLength: 5, maxLength: 5 }),
+    sheet: runSheet,
+  })
+  .map(({ paths, wells, others, isAtEnds, conditions, sheet }) => {
+    const channels = paths.map(
+      ([x, y, commands, w, more], i) =>
+        `<path id="${['a', 'b', 'lane-1', 'lane-2', 'c', 'd'][i]}" d="M${x} ${y}${commands.join('')}" fill="none" stroke="#000" stroke-width="${w}" ${more}/>`,
+    );
+    // Wells at the starts of channels join them; wells anywhere else mostly do not.
+    const holes = wells.map(([x, y, r], i) => {
+      const [cx, cy] = isAtEnds && i < paths.length ? paths[i] : [x, y];
+      return `<circle id="${PORTS[i]}" cx="${cx}" cy="${cy}" r="${r}"/>`;
+    });
+    const own = sheet
+      .replace(/^(?:unit|size|outline|ports_layer|ignore|layers): .*\n/gm, '')
+      .replace(/ports:\n(?: .*\n)*/, '');
+    const ports = wells.map((_, i) => `  ${PORTS[i]}: ${conditions[i]}\n`).join('');
+    return {
+      svg: `<svg xmlns="http://www.w3.org/2000/svg" width="50mm" height="50mm" viewBox="0 0 50 50">${[...channels, ...holes, ...others].join('\n')}</svg>`,
+      sheet: `depth: 60 um\n${own.replace(/^depth: .*\n/m, '')}ports:\n${ports}`,
+    };
+  });
+
+const PORTS = ['in', 'out', 'p', 'q', 'r'] as const;

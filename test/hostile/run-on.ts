@@ -65,9 +65,11 @@ export function faultsOf({ code, out, err, seconds, written }: Ran, argv: readon
   if (!CODES.has(code)) faults.push(`exit code ${code}`);
   if (seconds > 10) faults.push(`${seconds.toFixed(1)} s`);
   if (/^\s+at .*(?::\d+:\d+|\(native\))/m.test(err + out)) faults.push('a stack trace');
-  if (/\bNaN\b|\bInfinity\b|\bundefined\b|\[object /.test(err))
+  // What the input said is quoted.
+  if (/\bNaN\b|\bInfinity\b|\bundefined\b|\[object /.test(err.replace(/"[^"]*"|at ".*$/g, '')))
     faults.push(`on stderr: ${err.slice(0, 300)}`);
-  if (code === 2 && err.trim().split('\n').length !== 1)
+  // Without arguments the usage is printed, on two lines.
+  if (code === 2 && argv.length > 0 && err.trim().split('\n').length !== 1)
     faults.push(`an error of several lines: ${err.slice(0, 500)}`);
   if (code === 2 && written.size > 0)
     faults.push(`exit 2 and yet written: ${[...written.keys()].join(', ')}`);
@@ -76,7 +78,7 @@ export function faultsOf({ code, out, err, seconds, written }: Ran, argv: readon
     const fault = faultOfFile(path, bytes);
     if (fault !== null) faults.push(`${path}: ${fault}`);
   }
-  if (argv.includes('--json') && code < 2) {
+  if (argv.includes('--json') && code < 2 && !/^(?:Usage: |\d+\.\d+\.\d+\n$)/.test(out)) {
     const fault = faultOfJson(out);
     if (fault !== null) faults.push(`stdout: ${fault}`);
   }
