@@ -1,6 +1,6 @@
-import { isInPieceStrip } from '../geometry/strip.ts';
 import { formatNumber } from '../report/quantity.ts';
 import type { FindingContext } from './context.ts';
+import { gapToHole } from './painted.ts';
 import { channelPaths, pointOn } from './paths.ts';
 import { found, isAbove, isBelow, limitRule, type Rule, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
@@ -121,10 +121,9 @@ function cornersOfLines(context: FindingContext, limitRad: number): Corner[] {
   for (let c = 0; c < pieces.centrelineCount; c++) {
     const first = pieces.firstPiece[c];
     const end = pieces.firstPiece[c + 1];
-    const closed = pieces.centrelineClosed[c] === 1;
-    for (let i = first; i < end; i++) {
-      if (i + 1 === end && !(closed && end - first > 1)) continue;
-      const j = i + 1 === end ? first : i + 1;
+    // Where a closed channel begins is a vertex of its own.
+    for (let i = first; i + 1 < end; i++) {
+      const j = i + 1;
       const ux = pieces.x1[i] - pieces.x2[i];
       const uy = pieces.y1[i] - pieces.y2[i];
       const vx = pieces.x2[j] - pieces.x1[j];
@@ -254,7 +253,7 @@ function notches(context: FindingContext): Finding[] {
     const plane = pieces.plane[one.piece];
     const over = trace.near.index?.search(x, y, x, y, (i) => {
       if (i === one.piece || i === two.piece || pieces.plane[i] !== plane) return false;
-      return isInPieceStrip(pieces, i, x, y, 0, null);
+      return gapToHole(chip, pieces, i, { xMm: x, yMm: y, radiusMm: 0 }).distanceMm <= 0;
     });
     return over !== undefined && over.length > 0;
   }

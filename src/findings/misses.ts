@@ -158,7 +158,8 @@ function findMiss(context: FindingContext, end: number): NearMiss | null {
     const target = aim.distanceMm > 1e-9 ? { x: aim.x1, y: aim.y1 } : { x: onLine.x2, y: onLine.y2 };
     const pointsAtIt = pointsAt(target.x, target.y);
     const apartMm = 4 * (half + pieces.half[i] + minWallMm);
-    if (isOwnBend(i, t, apartMm) || (!pointsAtIt && isNearAlong(pieces.centreline[i], t, apartMm))) continue;
+    // What it leads to by a short way (its own last bend, its own junction) it does not miss, unless it points back at it.
+    if (!pointsAtIt && isNearAlong(pieces.centreline[i], t, apartMm)) continue;
     consider({
       end,
       centreline: c,
@@ -208,11 +209,6 @@ function findMiss(context: FindingContext, end: number): NearMiss | null {
     const dy = y - place.y;
     const distance = Math.hypot(dx, dy);
     return distance === 0 || !isAbove(COS_45 * distance, dx * place.outX + dy * place.outY + 1e-12);
-  }
-
-  /** The channel's own last stretch, turning away from its end. */
-  function isOwnBend(i: number, t: number, apartMm: number): boolean {
-    return pieces.centreline[i] === c && Math.abs(t - place.s) <= apartMm;
   }
 
   function isNearAlong(other: number, t: number, apartMm: number): boolean {

@@ -2,7 +2,6 @@ import type { Pieces } from '../geometry/pieces.ts';
 import { closestPoints, type Line, stretchWithin } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 import { onlyGrows } from './growth.ts';
-import { forOwnTurns } from './own-turns.ts';
 import { lineOf } from './painted.ts';
 import { isAbove } from './rule.ts';
 import { type Facing, groupStretches } from './stretches.ts';
@@ -46,7 +45,6 @@ export const doubleStrokes: (context: FindingContext) => readonly DoubleStroke[]
     const { pieces, pairCount, pairA, pairB, pairDistance } = near;
     const found: Along[] = [];
     for (let k = 0; k < pairCount; k++) addAlong(found, pieces, pairA[k], pairB[k], pairDistance[k]);
-    forOwnTurns(pieces, 0, (i, j, distanceMm) => addAlong(found, pieces, i, j, distanceMm));
     for (let i = 0; i + 1 < pieces.count; i++) {
       if (pieces.centreline[i] === pieces.centreline[i + 1]) addRetraced(found, pieces, i);
     }

@@ -5,7 +5,6 @@ import { isInPieceStrip } from '../geometry/strip.ts';
 import { closestPoints, type Line, stretchWithin } from './closest.ts';
 import type { FindingContext } from './context.ts';
 import { onlyGrows } from './growth.ts';
-import { forOwnTurns } from './own-turns.ts';
 import { gapBetween, hasFlatEnd, lineOf } from './painted.ts';
 import { channelPaths, pointOn, type Route, routeLength } from './paths.ts';
 import { coveredLength, type Facing, groupStretches } from './stretches.ts';
@@ -66,13 +65,13 @@ export function findThinWalls(
 ): ThinWall[] {
   const { pieces } = near;
   const stretches: ThinStretch[] = [];
-  const look = (i: number, j: number, distanceMm: number): void => {
+  for (let k = 0; k < near.pairCount; k++) {
+    const i = near.pairA[k];
+    const j = near.pairB[k];
     const limitMm = limitOf(pieces.channel[i], pieces.channel[j]);
-    if (Number.isNaN(limitMm)) return;
-    addThinStretches(stretches, context, pieces, i, j, distanceMm, limitMm);
-  };
-  for (let k = 0; k < near.pairCount; k++) look(near.pairA[k], near.pairB[k], near.pairDistance[k]);
-  forOwnTurns(pieces, near.withinMm, look);
+    if (Number.isNaN(limitMm)) continue;
+    addThinStretches(stretches, context, pieces, i, j, near.pairDistance[k], limitMm);
+  }
   return groupStretches(stretches, ({ apartMm }) => apartMm / 2)
     .filter((group) => !isWedge(context, group))
     .map((group) => toThinWall(context, pieces, group));

@@ -121,15 +121,16 @@ function areConsecutive(pieces: Pieces, i: number, j: number): boolean {
   return pieces.centrelineClosed[c] === 1 && i === pieces.firstPiece[c] && j === pieces.firstPiece[c + 1] - 1;
 }
 
-/** Stretches of one centreline nearer than two widths along it are one duct turning, unless they touch. */
+/** Two pieces that lie, ends and all, within two widths of one centreline are one duct turning, unless they touch. */
 function isOwnBend(pieces: Pieces, i: number, j: number, distance: number): boolean {
   const c = pieces.centreline[i];
   if (c !== pieces.centreline[j] || distance <= TOUCH_MM) return false;
-  const between = pieces.start[j] - pieces.start[i] - pieces.length[i];
+  const span = pieces.start[j] + pieces.length[j] - pieces.start[i];
   const twoWidths = 4 * pieces.half[i];
-  if (between < twoWidths) return true;
+  if (span <= twoWidths) return true;
   if (pieces.centrelineClosed[c] === 0) return false;
-  return pieces.centrelineLength[c] - (pieces.start[j] + pieces.length[j] - pieces.start[i]) < twoWidths;
+  const between = pieces.start[j] - pieces.start[i] - pieces.length[i];
+  return pieces.centrelineLength[c] - between <= twoWidths;
 }
 
 function pairsByPiece(n: number, pairA: Int32Array, pairB: Int32Array) {

@@ -56,13 +56,19 @@ export function buildNetwork(chip: Chip): Network {
   return toNetwork(draft, stops, kept, arcs, reaches, strips, joints, tally);
 }
 
-/** Strips nearer than this are of interest to some rule: the join slack, or the least wall. */
+/** Strips nearer than this are of interest to some rule: the join slack, the least wall, or half the depth (slender walls). */
 function nearnessMm(chip: Chip): number {
   let wall = 0;
-  for (const layer of chip.layers) {
-    const limit = chip.limits.minWallM(Number.isNaN(layer.depthM) ? 0 : layer.depthM);
-    if (limit !== null) wall = Math.max(wall, limit.value * 1e3);
-  }
+  const add = (depthM: number): void => {
+    const known = Number.isNaN(depthM) ? 0 : depthM;
+    wall = Math.max(wall, (chip.limits.minWallM(known)?.value ?? 0) * 1e3);
+    if (chip.process === 'cast elastomer') wall = Math.max(wall, known * 500);
+  };
+  for (const layer of chip.layers) add(layer.depthM);
+  // `data-depth` may make a channel deeper than its layer.
+  const own = new Set<number>();
+  for (const { depthMm } of chip.channels) own.add(depthMm);
+  for (const depthMm of own) add(depthMm / 1e3);
   return Math.max(chip.joinWithinMm, wall);
 }
 

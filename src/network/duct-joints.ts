@@ -1,5 +1,5 @@
 import type { Chip } from '../chip/types.ts';
-import { bendK, MITRE_MAX_TURN_RAD, mitreK } from '../physics/joints.ts';
+import { bendK, MITRE_MAX_TURN_RAD, mitreK, shallowMitreK } from '../physics/joints.ts';
 import type { JointTally } from './joint-types.ts';
 import { ANGLE_TOLERANCE_RAD, APART_WIDTHS, turnBetween } from './node-joints.ts';
 import type { Reaches } from './reaches.ts';
@@ -61,6 +61,10 @@ function addCorners(
       segments.y2[next] - segments.y1[next],
       segments.bendRadius[next],
     );
+  // A bend is a joint too, where it turns by more than the tolerance over the room that a corner needs. It has no meeting
+  // point; it begins where a mitre's square would: half a width before.
+  const isTight = (radius: number): boolean =>
+    radius > 0 && (APART_WIDTHS - 0.5) * width > ANGLE_TOLERANCE_RAD * radius;
   let sinceJoint = 0;
   /** Corner that waits for the distance to the next joint: its turn, the distance behind it and its place. */
   let waiting: { turn: number; behind: number; segment: number } | null = null;
@@ -81,7 +85,12 @@ function addCorners(
   };
   if (isLoop) sinceJoint = Number.POSITIVE_INFINITY;
   for (let s = begin; s + 1 < end; s++) {
-    sinceJoint += segmentLength(reaches, s);
+    if (isTight(segments.bendRadius[s])) {
+      settle(sinceJoint + width / 2);
+      sinceJoint = width / 2;
+    } else {
+      sinceJoint += segmentLength(reaches, s);
+    }
     const turn = turnAt(s, s + 1);
     if (turn <= 1e-6) continue;
     // Needs no room and is not listed: its k is below 0.001.
@@ -95,9 +104,14 @@ function addCorners(
     waiting = { turn, behind: sinceJoint, segment: s };
     sinceJoint = 0;
   }
-  const rest = end > begin ? segmentLength(reaches, end - 1) : 0;
-  if (isLoop) settle(Number.POSITIVE_INFINITY);
-  else if (rest > slackMm) settle(rest);
+  if (isLoop) {
+    settle(Number.POSITIVE_INFINITY);
+    return;
+  }
+  if (end === begin) return;
+  const rest =
+    sinceJoint + (isTight(segments.bendRadius[end - 1]) ? width / 2 : segmentLength(reaches, end - 1));
+  if (rest > slackMm) settle(rest);
 }
 
 /** A closed channel that no node interrupts. */
@@ -127,8 +141,10 @@ function addCorner(
     tally.add('mitred corner', k * width, error * width, x, y);
     return;
   }
-  // Two corners close together turn the flow less than two by themselves; beyond 120° the correction goes on growing.
-  const bound = (Math.abs(k) + error) * width * (isComputed ? 1 : 1 + (turn - MITRE_MAX_TURN_RAD));
+  // Two corners close together turn the flow less than two by themselves. Beyond 120° the correction grows with the overlap
+  // of the legs, most in the shallow limit, up to all that there is of the shorter one on either leg.
+  const beyond = isComputed ? 0 : Math.min(Math.abs(shallowMitreK(turn)) * width, 2 * room);
+  const bound = Math.max((Math.abs(k) + error) * width, beyond);
   joints.reachBoundMm[r] += bound;
   tally.add('corner not computed', 0, bound, x, y);
 }

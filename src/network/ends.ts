@@ -54,13 +54,12 @@ function joinEnd(draft: Draft, end: number, met: Meetings, strips: StripNeighbou
   for (const candidate of candidatesOf(draft, end)) {
     const last = lastMeeting(draft, end, candidate.centreline, met);
     if (last !== null && hasStayedInside(draft, end, last, candidate.centreline, strips)) {
-      // Met to the last bit at the end itself: joined there. Met before: rule 4's.
+      // Met to the last bit at the end itself: joined there. Met before: rule 4's, and no farther strip's.
       if (Math.abs(endPosition(draft, end) - last) <= draft.slackMm) {
         ends.state[end] = END_JOINED;
         ends.joinedTo[end] = candidate.centreline;
-        return;
       }
-      continue;
+      return;
     }
     const place = carryOn(draft, end, candidate);
     ends.state[end] = END_JOINED;

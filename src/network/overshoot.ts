@@ -1,5 +1,5 @@
 import { pieceAt } from '../geometry/pieces.ts';
-import { distanceToSegment } from '../geometry/segment.ts';
+import { distanceToSegment, nearestParameter } from '../geometry/segment.ts';
 import { isInPieceStrip } from '../geometry/strip.ts';
 import { type Draft, END_FREE, END_JOINED, endPiece, endPosition, pointAt } from './draft.ts';
 import { type NodeStops, type Stops, stopsByNode } from './stops.ts';
@@ -14,6 +14,9 @@ export interface Kept {
 }
 
 export type LeftOut = 'overshoot' | 'overlap' | 'well-stub' | null;
+
+/** Far below anything drawn, far above rounding. */
+const ROUNDING_MM = 1e-9;
 
 /** Two strokes that run within this angle of each other run along each other (rule 4). */
 const ALONG_RAD = (15 * Math.PI) / 180;
@@ -78,19 +81,38 @@ function findDeadPiece(draft: Draft, stops: Stops, byNode: NodeStops, end: numbe
       return { position, why: 'well-stub' };
   }
   const channels = new Set<number>();
+  let meetsItself = false;
   for (let k = byNode.first[node]; k < byNode.first[node + 1]; k++) {
     const other = stops.centreline[byNode.stop[k]];
     if (other !== c) channels.add(pieces.centrelineChannel[other]);
+    else if (byNode.stop[k] !== stop) meetsItself = true;
   }
   const piece = endPiece(pieces, end);
   for (let k = draft.near.firstPair[piece]; k < draft.near.firstPair[piece + 1]; k++) {
     const pair = draft.near.pairOf[k];
     const other = draft.near.pairA[pair] === piece ? draft.near.pairB[pair] : draft.near.pairA[pair];
-    if (pieces.centreline[other] === c || !channels.has(pieces.channel[other])) continue;
+    const isOwn = pieces.centreline[other] === c;
+    if (isOwn ? !(meetsItself && isFarBack(draft, end, other)) : !channels.has(pieces.channel[other]))
+      continue;
     if (isInPieceStrip(pieces, other, ends.x[end], ends.y[end], slackMm, null))
       return { position, why: 'overshoot' };
   }
   return null;
+}
+
+/** Whether a piece of the end's own centreline passes it more than two widths back along it (rule 3). */
+function isFarBack(draft: Draft, end: number, piece: number): boolean {
+  const { pieces, ends } = draft;
+  const t = nearestParameter(
+    ends.x[end],
+    ends.y[end],
+    pieces.x1[piece],
+    pieces.y1[piece],
+    pieces.x2[piece],
+    pieces.y2[piece],
+  );
+  const along = Math.abs(pieces.start[piece] + t * pieces.length[piece] - endPosition(draft, end));
+  return along > 4 * pieces.half[piece];
 }
 
 /** The end piece of a joined end, back to the last join with the same channel, when it runs along that channel. */
@@ -105,6 +127,8 @@ function findOverlap(draft: Draft, stops: Stops, byNode: NodeStops, end: number)
   const limit = 2 * Math.max(width, otherWidth) + draft.slackMm;
   const atStart = (end & 1) === 0;
   const from = endPosition(draft, end);
+  const twin = twinOf(draft, end);
+  if (twin >= 0) return findTwinCut(draft, stops, end, twin);
   const outermost = atStart ? stops.firstStop[c] : stops.firstStop[c + 1] - 1;
   const step = atStart ? 1 : -1;
   for (let k = outermost + step; k >= stops.firstStop[c] && k < stops.firstStop[c + 1]; k += step) {
@@ -130,6 +154,39 @@ function findOverlap(draft: Draft, stops: Stops, byNode: NodeStops, end: number)
       if (width > otherWidth || (width === otherWidth && !isLater)) return null;
     }
     return { position, why: 'overlap' };
+  }
+  return null;
+}
+
+/**
+ * The end of another centreline that was carried on to this drawn end while this one was carried on to it, −1 for none:
+ * two strokes that miss each other sideways inside their strips are joined by one straight piece, not by two.
+ */
+function twinOf(draft: Draft, end: number): number {
+  const { ends } = draft;
+  const other = ends.joinedTo[end];
+  if (other < 0 || ends.extension[end] <= draft.slackMm) return -1;
+  for (const twin of [2 * other, 2 * other + 1]) {
+    if (ends.joinedTo[twin] !== end >> 1 || ends.extension[twin] <= draft.slackMm) continue;
+    const away = Math.hypot(ends.tipX[end] - ends.x[twin], ends.tipY[end] - ends.y[twin]);
+    const back = Math.hypot(ends.tipX[twin] - ends.x[end], ends.tipY[twin] - ends.y[end]);
+    if (away <= draft.slackMm && back <= draft.slackMm) return twin;
+  }
+  return -1;
+}
+
+/** Of two pieces carried on to each other's drawn ends, the narrower channel's (of equal ones the later drawn) is left out. */
+function findTwinCut(draft: Draft, stops: Stops, end: number, twin: number): Cut | null {
+  const { pieces, ends } = draft;
+  const [c, other] = [end >> 1, twin >> 1];
+  const wider = pieces.half[endPiece(pieces, end)] - pieces.half[endPiece(pieces, twin)];
+  if (wider > 0 || (wider === 0 && c < other)) return null;
+  const drawn = (end & 1) === 0 ? 0 : pieces.centrelineLength[c];
+  for (let k = stops.firstStop[c]; k < stops.firstStop[c + 1]; k++) {
+    const isAtTip = Math.abs(stops.from[k] - drawn) >= ends.extension[end] - ROUNDING_MM;
+    if (!isAtTip && Math.abs(stops.from[k] - drawn) <= draft.slackMm) {
+      return { position: stops.from[k], why: 'overlap' };
+    }
   }
   return null;
 }

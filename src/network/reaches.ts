@@ -52,8 +52,9 @@ export function toArcs(draft: Draft, stops: Stops, kept: Kept): Arcs {
     for (let k = stops.firstStop[c]; k < stops.firstStop[c + 1]; k++) {
       if (stops.to[k] < start - NO_LENGTH_MM || stops.from[k] > end + NO_LENGTH_MM) continue;
       if (node < 0) {
-        // The middle of places joined at the end itself may lie half a slack inside it.
-        if (stops.from[k] - start <= draft.slackMm) {
+        // The middle of places joined at the end itself may lie half a slack inside it. A closed centreline has no end.
+        const isEnd = pieces.centrelineClosed[c] === 0 && stops.from[k] - start <= draft.slackMm;
+        if (isEnd) {
           node = stops.node[k];
           position = stops.to[k];
           continue;
@@ -150,7 +151,14 @@ export function toReaches(draft: Draft, arcs: Arcs, trims: Trims): Reaches {
       drawn += arcs.to[arc] - arcs.from[arc];
       byRule += countedLength(trims, factorByRule, arcs.centreline[arc], arcs.from[arc], arcs.to[arc]);
       resolved += countedLength(trims, factorResolved, arcs.centreline[arc], arcs.from[arc], arcs.to[arc]);
-      addSegments(draft, arcs, trims, factors, segments, arc, (side & 1) === 1, reach, firstSegment[reach]);
+    }
+    // Between two strips that leave no wall between them nothing is left to resolve, and a duct without length has no flow:
+    // the rule's length stands.
+    const isWithinStrips = resolved <= NO_LENGTH_MM;
+    if (isWithinStrips) resolved = byRule;
+    const own = isWithinStrips ? factorByRule : factors;
+    for (const side of chain) {
+      addSegments(draft, arcs, trims, own, segments, side >> 1, (side & 1) === 1, reach, firstSegment[reach]);
     }
     const head = chain[0];
     const tail = chain[chain.length - 1];

@@ -1,4 +1,4 @@
-import type { Draft } from './draft.ts';
+import { type Draft, END_JOINED, endPosition } from './draft.ts';
 
 /**
  * The nodes along each centreline, in order: places less than the slack apart are one node.
@@ -40,6 +40,7 @@ export function toStops(draft: Draft): Stops {
     const own = order.subarray(first[c], first[c + 1]);
     if (own.length > 1)
       own.sort((a, b) => marks.from[a] - marks.from[b] || marks.to[a] - marks.to[b] || a - b);
+    const middle = shortStrokeMiddle(draft, c, own);
     for (let k = 0; k < own.length; ) {
       let low = marks.from[own[k]];
       let high = marks.to[own[k]];
@@ -49,6 +50,7 @@ export function toStops(draft: Draft): Stops {
       let next = k;
       while (next < own.length && marks.from[own[next]] <= high + slackMm) {
         const m = own[next];
+        if (low <= middle && marks.from[m] > middle) break;
         nodes.unite(head, marks.node[m]);
         if (marks.port[m] >= 0) {
           wellLow = Math.min(wellLow, marks.from[m]);
@@ -81,7 +83,22 @@ export function toStops(draft: Draft): Stops {
   };
 }
 
-/** On a closed centreline the last stop and the first may be one place. */
+/**
+ * The middle of an open centreline so short that its two joined ends lie within slack of each other; NaN for any other.
+ * Its ends stay two places: a curve drawn as many strokes shorter than the slack keeps its length.
+ */
+function shortStrokeMiddle(draft: Draft, c: number, own: Int32Array): number {
+  const { marks, pieces, ends, slackMm } = draft;
+  if (own.length < 2 || pieces.centrelineClosed[c] === 1) return Number.NaN;
+  const start = endPosition(draft, 2 * c);
+  const end = endPosition(draft, 2 * c + 1);
+  if (end - start > slackMm * (own.length - 1)) return Number.NaN;
+  const isJoined = ends.state[2 * c] === END_JOINED && ends.state[2 * c + 1] === END_JOINED;
+  const hasWell = own.some((m) => marks.port[m] >= 0);
+  return isJoined && !hasWell ? pieces.centrelineLength[c] / 2 : Number.NaN;
+}
+
+/** On a closed centreline the last stop and the first may be one place, which is then its first point. */
 function uniteRoundStart(
   draft: Draft,
   firstStop: Int32Array,
@@ -90,11 +107,21 @@ function uniteRoundStart(
   node: Int32Array,
 ): void {
   const { pieces, nodes, slackMm } = draft;
+  const moveTo = (position: number, stop: number): void => {
+    from[stop] = position;
+    to[stop] = position;
+  };
   for (let c = 0; c < pieces.centrelineCount; c++) {
     if (pieces.centrelineClosed[c] === 0 || firstStop[c + 1] - firstStop[c] < 2) continue;
     const a = firstStop[c];
     const b = firstStop[c + 1] - 1;
-    if (from[a] + pieces.centrelineLength[c] - to[b] <= slackMm) nodes.unite(node[a], node[b]);
+    if (from[a] + pieces.centrelineLength[c] - to[b] > slackMm) continue;
+    nodes.unite(node[a], node[b]);
+    // A well keeps its rim; what lies between is within slack of it.
+    if (to[a] === from[a]) moveTo(0, a);
+    else from[a] = 0;
+    if (to[b] === from[b]) moveTo(pieces.centrelineLength[c], b);
+    else to[b] = pieces.centrelineLength[c];
   }
 }
 

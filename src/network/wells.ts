@@ -1,7 +1,7 @@
 import type { Port } from '../chip/types.ts';
 import { endsAtVertex, startsAtVertex } from '../geometry/pieces.ts';
 import { distanceToSegment, nearestParameter } from '../geometry/segment.ts';
-import { type Draft, END_IN_PORT, endPosition } from './draft.ts';
+import { type Draft, END_IN_PORT, endPiece, endPosition } from './draft.ts';
 
 /**
  * Rule 6: all centreline inside a port's circle is open well. An end inside it joins that port. A centreline that only
@@ -21,13 +21,12 @@ function markWell(draft: Draft, port: Port, p: number): void {
   if (near.index === null) return;
   const r = port.radiusMm + slackMm;
   const found = near.index.search(port.xMm - r, port.yMm - r, port.xMm + r, port.yMm + r);
-  /** Channel → nearest piece of a strip that the circle overlaps. */
-  const overlapped = new Map<number, { piece: number; distance: number }>();
+  const overlapped: Overlapped = new Map();
   const reached = new Set<number>();
   for (const i of found) {
-    const channel = pieces.channel[i];
+    const c = pieces.centreline[i];
     if (markInside(draft, port, p, i)) {
-      reached.add(channel);
+      reached.add(c);
       continue;
     }
     const distance = distanceToSegment(
@@ -39,13 +38,13 @@ function markWell(draft: Draft, port: Port, p: number): void {
       pieces.y2[i],
     );
     if (distance > port.radiusMm + pieces.half[i] + slackMm) continue;
-    const known = overlapped.get(channel);
+    const known = overlapped.get(c);
     if ((known === undefined || distance < known.distance) && circleTouchesStrip(draft, port, i)) {
-      overlapped.set(channel, { piece: i, distance });
+      overlapped.set(c, { piece: i, distance });
     }
   }
-  for (const [channel, { piece }] of overlapped) {
-    if (reached.has(channel)) continue;
+  for (const [c, { piece }] of overlapped) {
+    if (reached.has(c)) continue;
     const t = nearestParameter(
       port.xMm,
       port.yMm,
@@ -55,9 +54,50 @@ function markWell(draft: Draft, port: Port, p: number): void {
       pieces.y2[piece],
     );
     const s = pieces.start[piece] + t * pieces.length[piece];
-    draft.marks.addWell(pieces.centreline[piece], s, s, p);
-    markEndReached(draft, pieces.centreline[piece], s, s);
+    if (goesOnNearer(draft, overlapped, reached, c, s)) continue;
+    draft.marks.addWell(c, s, s, p);
+    markEndReached(draft, c, s, s);
   }
+}
+
+/** Centreline → nearest piece of a strip that the circle overlaps. */
+type Overlapped = Map<number, { readonly piece: number; readonly distance: number }>;
+
+/**
+ * Whether the nearest point of an overlapped centreline is its very end, and another one that the circle reaches or comes
+ * nearer to passes there: a stroke drawn in two is touched where the same stroke drawn in one would be.
+ */
+function goesOnNearer(
+  draft: Draft,
+  overlapped: Overlapped,
+  reached: ReadonlySet<number>,
+  c: number,
+  s: number,
+): boolean {
+  const { near, pieces, ends, slackMm } = draft;
+  if (pieces.centrelineClosed[c] === 1) return false;
+  const end = s === 0 ? 2 * c : s === pieces.centrelineLength[c] ? 2 * c + 1 : -1;
+  if (end < 0) return false;
+  const own = endPiece(pieces, end);
+  const distance = overlapped.get(c)?.distance ?? 0;
+  for (let k = near.firstPair[own]; k < near.firstPair[own + 1]; k++) {
+    const pair = near.pairOf[k];
+    const i = near.pairA[pair] === own ? near.pairB[pair] : near.pairA[pair];
+    const other = pieces.centreline[i];
+    const nearer = overlapped.get(other)?.distance ?? Number.POSITIVE_INFINITY;
+    if (other === c || !(reached.has(other) || nearer < distance || (nearer === distance && other < c)))
+      continue;
+    const gap = distanceToSegment(
+      ends.x[end],
+      ends.y[end],
+      pieces.x1[i],
+      pieces.y1[i],
+      pieces.x2[i],
+      pieces.y2[i],
+    );
+    if (gap <= slackMm) return true;
+  }
+  return false;
 }
 
 /** Marks the stretch of one piece inside the circle (or touching it within slack); false when there is none. */

@@ -13,8 +13,9 @@ export function sectionForm(profile: Profile, ductWidthM: number, depthM: number
   if (profile === 'rectangle') return form;
   const floorMean = (widthM: number, heightM: number): number =>
     isotropicFloorMean(widthM - (Math.PI * heightM) / 2, heightM);
-  // d ln τ/d ln x by central differences: the error is of the order of the squared step, 1e-9.
-  const step = 1e-5;
+  // d ln τ/d ln x by central differences: the error is of the order of the squared step, 1e-9. Neither step may use up a
+  // mask that is far narrower than the etch is deep.
+  const step = Math.min(1e-5, 0.1 * (1 - (Math.PI * depthM) / (2 * ductWidthM)));
   const slope = (more: number, less: number): number =>
     Math.log(more / less) / Math.log((1 + step) / (1 - step));
   const byWidth = slope(

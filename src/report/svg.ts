@@ -139,7 +139,14 @@ function label({ kind, text, box, sizeMm, leader }: MapLabel): string {
   const weight = kind === 'reach' ? '' : ' font-weight="bold"';
   const x = mm(box.x + box.width / 2);
   const y = mm(box.y + box.height / 2 + 0.36 * sizeMm);
-  return `${line}${frame}<text x="${x}" y="${y}" text-anchor="middle"${weight}>${escapeXml(text)}</text>\n`;
+  return `${line}${frame}<text x="${x}" y="${y}" text-anchor="middle"${weight}>${escapeXml(valueKept(text))}</text>\n`;
+}
+
+/** A left-to-right mark before the value: else a browser moves it to the far side of a right-to-left name. */
+function valueKept(text: string): string {
+  return /[\p{Script=Hebrew}\p{Script=Arabic}\p{Script=Syriac}\p{Script=Thaana}\p{Script=Nko}]/u.test(text)
+    ? text.replace(/ (?=-?\d\S*(?: \S+)?$)/, '\u200E ')
+    : text;
 }
 
 function foot({ legend, scaleBar }: MapDrawing): string[] {

@@ -226,3 +226,124 @@ describe('junctions', () => {
     expect(bound.a).toBeGreaterThan(0.05);
   });
 });
+
+describe('what nobody computed', () => {
+  it('is bounded by no less than the jump, as an angle, width or depth passes the edge of a case', () => {
+    const two = (width: number, degrees: number, depthMm = W): ChannelSpec[] => {
+      const rad = (degrees * Math.PI) / 180;
+      return [
+        { name: 'a', widthMm: W, lines: [[-40, 0, 0, 0]] },
+        { name: 'b', widthMm: width, depthMm, lines: [[0, 0, 40 * Math.cos(rad), 40 * Math.sin(rad)]] },
+      ];
+    };
+    const withSide = (main: number, side: number, degrees: number): ChannelSpec[] => {
+      const rad = (degrees * Math.PI) / 180;
+      return [
+        { name: 'main', widthMm: main, lines: [[-40, 0, 40, 0]] },
+        { name: 'b', widthMm: side, lines: [[0, 0, 40 * Math.cos(rad), 40 * Math.sin(rad)]] },
+      ];
+    };
+    const edges: [ChannelSpec[], ChannelSpec[]][] = [
+      [two(10 * W, 4.99), two(10 * W, 5.01)],
+      [two(10 * W, 0), two(10 * W, 0, 1.0001 * W)],
+      [two(W, 90), two(1.0001 * W, 90)],
+      [two(W, 119.9), two(W, 120.1)],
+      [[bent(119.9)], [bent(120.1)]],
+      [withSide(W, W, 85.01), withSide(W, W, 84.99)],
+      [withSide(10 * W, W, 85.01), withSide(10 * W, W, 84.99)],
+      [withSide(W, W, 90), withSide(W, 1.0001 * W, 90)],
+    ];
+    for (const [inside, outside] of edges) {
+      const [computed, counted] = [resolved(inside), resolved(outside)];
+      for (const [name, length] of Object.entries(computed.duct)) {
+        const jump = Math.abs(length - counted.duct[name]);
+        if (jump <= 0.01 * W) continue;
+        expect(counted.bound[name], `${name}: ${Object.keys(counted.kinds)}`).toBeGreaterThanOrEqual(jump);
+      }
+    }
+  });
+
+  it('passes through 1.98 w between corners, and one width of a bend’s radius, only with a bound above the jump', () => {
+    const uTurn = (gap: number): ChannelSpec => ({
+      name: 'a',
+      widthMm: W,
+      lines: [[0, 0, 2, 0, 2, gap * W, 0, gap * W]],
+    });
+    const [apart, near] = [resolved([uTurn(1.9801)]), resolved([uTurn(1.9799)])];
+    expect(near.bound.a).toBeGreaterThan(Math.abs(near.duct.a - apart.duct.a));
+  });
+
+  it('is bounded by the overlap of the legs, the sharper they meet the more', () => {
+    // By conformal mapping the shallow limit is −2.94 w at 150° and −10.6 w at 170°.
+    for (const [degrees, least] of [
+      [150, 2.94],
+      [170, 10.5],
+    ]) {
+      expect(resolved([bent(degrees)]).bound.a).toBeGreaterThan(least * W);
+      const line = bent(degrees).lines[0];
+      const { bound } = resolved([
+        { name: 'a', widthMm: W, lines: [line.slice(0, 4)] },
+        { name: 'b', widthMm: W, lines: [line.slice(2)] },
+      ]);
+      expect(bound.a + bound.b).toBeGreaterThan(least * W);
+    }
+    const oblique = resolved([
+      { name: 'main', widthMm: W, lines: [[-4, 0, 4, 0]] },
+      { name: 'side', widthMm: W, lines: [[0, 0, 4 * Math.cos(0.5), 4 * Math.sin(0.5)]] },
+    ]);
+    expect(oblique.bound.side).toBeGreaterThan((0.5 / Math.tan(0.25)) * W);
+  });
+
+  it('never reaches beyond the legs of a hairpin that doubles back', () => {
+    const { bound } = resolved([{ name: 'a', widthMm: W, lines: [[0, 0, 1, 0, 0, 1e-9]] }]);
+    expect(bound.a).toBeLessThan(2.1);
+  });
+
+  it('takes a tight bend for a joint that needs room beside a corner and a T, and a gentle one not', () => {
+    const bend = (straight: number, radius: number): { line: number[]; bends: number[] } => {
+      const line = [0, 0, 0, straight];
+      const bends = [0];
+      for (let k = 1; k <= 24; k++) {
+        const t = (k / 24) * (Math.PI / 2);
+        line.push(radius * (1 - Math.cos(t)), straight + radius * Math.sin(t));
+        bends.push(radius);
+      }
+      line.push(line[line.length - 2] + 3, line[line.length - 1]);
+      bends.push(0);
+      return { line, bends };
+    };
+    const kinds = (corner: boolean, straight: number, radius: number) => {
+      const { line, bends } = bend(straight, radius);
+      const main: ChannelSpec = { name: 'main', widthMm: W, lines: [[-9, 0, 9, 0]] };
+      const side: ChannelSpec = { name: 'side', widthMm: W, lines: [corner ? [-9, 0, ...line] : line] };
+      const chip: Chip = { ...chipOf(corner ? [side] : [main, side]), joints: 'resolved' };
+      const channels = chip.channels.map((channel) =>
+        channel.name === 'side'
+          ? {
+              ...channel,
+              centrelines: [
+                {
+                  ...channel.centrelines[0],
+                  bendRadius: Float64Array.from(corner ? [0, ...bends] : bends),
+                },
+              ],
+            }
+          : channel,
+      );
+      return buildNetwork({ ...chip, channels }).joints.map(({ kind }) => kind);
+    };
+    expect(kinds(false, 1.5 * W, W)).toEqual(['bend', 'T of equal ducts']);
+    expect(kinds(false, 1.2 * W, W)).toEqual(['bend', 'junction not computed']);
+    expect(kinds(false, 1.2 * W, 20 * W)).toEqual(['bend', 'T of equal ducts']);
+    expect(kinds(true, 1.5 * W, W)).toEqual(['mitred corner', 'bend']);
+    expect(kinds(true, 1.2 * W, W)).toEqual(['bend', 'corner not computed']);
+    expect(kinds(true, 1.2 * W, 20 * W)).toEqual(['mitred corner', 'bend']);
+  });
+
+  it('looks for room beyond a vertex on a straight leg', () => {
+    const corner = resolved([{ name: 'a', widthMm: W, lines: [[0, 0, 1.9, 0, 2, 0, 2, 1.9, 2, 2]] }]);
+    expect(corner.kinds).toEqual({ 'mitred corner': 1 });
+  });
+});
+
+const bent = (degrees: number): ChannelSpec => ({ name: 'a', widthMm: W, lines: [corner(degrees, 8)] });

@@ -21,7 +21,7 @@ export function writeFindings(context: PageContext): void {
   paper.heading(section, 1, 'Findings');
   paper.paragraph(
     section,
-    `${verdictLine(one.part.verdict, one.part.counts)}. Numbers are those on the map of page 1; places are in drawing coordinates, mm, y down.`,
+    `${verdictLine(one.part.verdict, one.part.counts)}. Numbers are those on the map of ${one.name === null ? 'page 1' : 'this case'}; places are in drawing coordinates, mm, y down.`,
     SMALL,
   );
   paper.y += 4;

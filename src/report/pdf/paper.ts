@@ -2,6 +2,7 @@ import PDFDocument from 'pdfkit';
 import { cleanText, wrapMeasured } from '../plain-text.ts';
 import { glyphCoverage } from './glyph-coverage.ts';
 import { layOutPlainly } from './plain-layout.ts';
+import { visualChunks } from './visual-order.ts';
 
 export interface Fonts {
   readonly regular: Uint8Array;
@@ -195,7 +196,11 @@ export class Paper {
     if (text === '') return;
     this.use(style);
     this.doc.fillColor(style.colour ?? INK);
-    this.doc.text(text, x, y, { lineBreak: false });
+    let at = x;
+    for (const chunk of visualChunks(text)) {
+      this.doc.text(chunk, at, y, { lineBreak: false });
+      at += this.doc.widthOfString(chunk);
+    }
   }
 
   putRight(text: string, right: number, y: number, style: TextStyle): void {
@@ -205,7 +210,7 @@ export class Paper {
   /** Width of readable text. */
   widthOf(text: string, style: TextStyle): number {
     this.use(style);
-    return this.doc.widthOfString(text);
+    return visualChunks(text).reduce((sum, chunk) => sum + this.doc.widthOfString(chunk), 0);
   }
 
   /**

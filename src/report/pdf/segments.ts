@@ -41,7 +41,8 @@ export function writeSegments({ paper, one }: PageContext): void {
 
 const LEGEND =
   'Straight pieces of the reaches, from → to. Places in drawing coordinates, mm, y down. A curve is cut into straight pieces whose summed length is within 1e-4 ' +
-  'of its own; they stand together in one row, with the sums of their lengths, resistances, drops and times, and one by one in the CSV file.';
+  'of its own; they stand together in one row, with the sums of their lengths, resistances, drops and times, and one by one in the CSV file. ' +
+  'What a joint adds to its reach belongs to none of its segments.';
 
 /** One straight segment, or the pieces of one curve together. */
 interface Printed {
