@@ -15,9 +15,11 @@ export const EXIT_INTERRUPTED = 130;
  */
 export async function run(argv: readonly string[], io: Io): Promise<number> {
   let code = 0;
-  const program = toProgram(io, (result) => {
+  const help: string[] = [];
+  const finish = (result: number): void => {
     code = result;
-  });
+  };
+  const program = toProgram(io, finish, (text) => help.push(text));
   try {
     if (argv.length === 0) {
       io.err(`${shortUsage()}\n`);
@@ -26,7 +28,13 @@ export async function run(argv: readonly string[], io: Io): Promise<number> {
     await program.parseAsync(argv as string[], { from: 'user' }); // commander types its argument as mutable and does not change it
     return code;
   } catch (error) {
-    return codeOf(error, io);
+    try {
+      // Help and version end in an error of commander's.
+      if (help.length > 0) await io.out(help.join(''));
+      return codeOf(error, io);
+    } catch (cause) {
+      return codeOf(cause, io);
+    }
   }
 }
 
@@ -75,7 +83,7 @@ Exit codes:
   70   a bug in rillcheck
   130  interrupted`;
 
-function toProgram(io: Io, finish: (code: number) => void): Command {
+function toProgram(io: Io, finish: (code: number) => void, writeHelp: (text: string) => void): Command {
   const program = new Command('rillcheck')
     .description(
       'Checks a microfluidic chip drawn as SVG before fabrication: pressures, flows, wall shear, residence time, and what is wrong with the layout.',
@@ -83,7 +91,7 @@ function toProgram(io: Io, finish: (code: number) => void): Command {
     .version(VERSION, '-V, --version')
     .exitOverride()
     .configureOutput({
-      writeOut: (text) => void io.out(text),
+      writeOut: writeHelp,
       writeErr: (text) => io.err(text),
       outputError: (text, write) =>
         write(`rillcheck: ${oneLine(text.replace(/^error: /, ''))}; see rillcheck --help\n`),

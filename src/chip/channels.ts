@@ -1,5 +1,7 @@
+import { InputError } from '../errors.ts';
 import type { Centreline, Stroke } from '../layout/types.ts';
 import { isotropicSection } from '../physics/section.ts';
+import { quote } from '../runsheet/quote.ts';
 import { depthOf, type LayerFinder } from './layers.ts';
 import type { SettingsFinder } from './settings.ts';
 import type { Channel, ReadingFault } from './types.ts';
@@ -48,8 +50,9 @@ export function readChannels(
     for (const by of stroke.disguises) {
       faults.push({ kind: 'disguised-stroke', channel: name, by, ...startOf(stroke, unitMm) });
     }
-    const drawnWidthMm = stroke.width * unitMm;
-    const depthMm = depthM * 1000;
+    const drawnWidthMm = withoutRounding(stroke.width * unitMm);
+    const depthMm = withoutRounding(depthM * 1000);
+    refuseHairline(name, drawnWidthMm, depthMm, layer.profile, file);
     const { ductWidthMm, stripHalfWidthMm } = sectionOf(drawnWidthMm, depthMm, layer.profile);
     channels.push({
       name,
@@ -75,6 +78,36 @@ export function readChannels(
 function startOf(stroke: Stroke, unitMm: number): { readonly xMm: number; readonly yMm: number } {
   const points = stroke.centrelines[0]?.points;
   return { xMm: (points?.[0] ?? Number.NaN) * unitMm, yMm: (points?.[1] ?? Number.NaN) * unitMm };
+}
+
+/**
+ * Widths and depths decide by equality what is one strip and where a step is: 0.7 under `scale(0.1)` as 7, or 65 um beside
+ * 0.065 mm, must not differ in the last bit. Twelve digits are far beyond what anyone draws or etches.
+ */
+function withoutRounding(lengthMm: number): number {
+  return Number(lengthMm.toPrecision(12));
+}
+
+/** Below it no process makes a channel, and an etched one is all undercut: quotients of its width lose their digits. */
+const LEAST_WIDTH_MM = 1e-5;
+const LEAST_MASK_TO_DEPTH = 1e-3;
+
+function refuseHairline(
+  name: string,
+  drawnWidthMm: number,
+  depthMm: number,
+  profile: Channel['profile'],
+  file: string,
+): void {
+  const least =
+    profile === 'isotropic' && depthMm > 0
+      ? Math.max(LEAST_WIDTH_MM, LEAST_MASK_TO_DEPTH * depthMm)
+      : LEAST_WIDTH_MM;
+  if (drawnWidthMm >= least) return;
+  throw new InputError(
+    file,
+    `channel ${quote(name)} is ${Number(drawnWidthMm.toPrecision(4))} mm wide, which no process makes; set its stroke width, or name it under ignore: in the run sheet`,
+  );
 }
 
 interface Section {

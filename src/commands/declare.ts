@@ -1,4 +1,4 @@
-import { type Command, Option } from 'commander';
+import { type Command, InvalidArgumentError, Option } from 'commander';
 import type { Io } from './io.ts';
 import { FORMATS } from './options.ts';
 
@@ -172,7 +172,16 @@ function layoutOptions(command: Command): Command {
         .choices(['shear', 'pressure', 'flow', 'residence'])
         .default('pressure'),
     )
-    .addOption(new Option('--paper <SIZE>', 'paper of the PDF').choices(['a4', 'letter']).default('a4'))
+    .addOption(
+      new Option('--paper <SIZE>', 'paper of the PDF: a4 or letter').argParser(paperOf).default('a4'),
+    )
     .option('-q, --quiet', 'print only the verdict')
     .option('--no-color', 'no colour on the terminal');
+}
+
+/** A paper size as people write it: A4, letter. */
+function paperOf(text: string): 'a4' | 'letter' {
+  const size = text.toLowerCase();
+  if (size === 'a4' || size === 'letter') return size;
+  throw new InvalidArgumentError('Allowed choices are a4, letter.');
 }

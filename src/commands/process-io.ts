@@ -1,5 +1,5 @@
 import { InputError } from '../errors.ts';
-import type { Io } from './io.ts';
+import { type Io, WriteError } from './io.ts';
 
 /** The real world: this process's streams, environment, clock and signals. */
 export function processIo(): Io {
@@ -9,15 +9,18 @@ export function processIo(): Io {
     if (interrupted) process.exit(130);
     interrupted = true;
   });
-  // `rillcheck … | head`: the reader has gone, which is no fault of ours and nothing more to do.
+  // `rillcheck … | head`: the reader has gone, which is no fault of ours and nothing more to do. Any other error comes to the
+  // one who wrote.
   process.stdout.on('error', (error: NodeJS.ErrnoException) => {
     if (error.code === 'EPIPE') process.exit(process.exitCode ?? 0);
-    throw error;
   });
+  // Where errors can't be told there is nobody to tell it to.
+  process.stderr.on('error', () => undefined);
+  let now: Date | null = null;
   return {
     out: (text) =>
-      new Promise((resolve) => {
-        process.stdout.write(text, () => resolve());
+      new Promise((resolve, reject) => {
+        process.stdout.write(text, (error) => (error == null ? resolve() : reject(cantWrite(error))));
       }),
     err: (text) => {
       process.stderr.write(text);
@@ -32,9 +35,18 @@ export function processIo(): Io {
       for await (const chunk of process.stdin) chunks.push(chunk as Buffer); // stdin without an encoding yields buffers
       return Buffer.concat(chunks).toString('utf8');
     },
-    now: reportDate(process.env.SOURCE_DATE_EPOCH),
+    // Read once, and only then judged: a command that prints no date asks for none.
+    get now() {
+      now ??= reportDate(process.env.SOURCE_DATE_EPOCH);
+      return now;
+    },
     isInterrupted: () => interrupted,
   };
+}
+
+function cantWrite(error: NodeJS.ErrnoException): WriteError {
+  const why = error.code === 'ENOSPC' ? 'no space left on the disk' : (error.code ?? error.message);
+  return new WriteError(`stdout: can't be written (${why}); send it somewhere else`, { cause: error });
 }
 
 function reportDate(epoch: string | undefined): Date {

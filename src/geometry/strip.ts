@@ -51,14 +51,44 @@ export function addStripStretches(
   slackMm: number,
   ends: StripEnds | null,
 ): void {
+  const shape: PieceShape = {
+    px: pieces.x1[piece],
+    py: pieces.y1[piece],
+    qx: pieces.x2[piece],
+    qy: pieces.y2[piece],
+    length: pieces.length[piece],
+    half: pieces.half[piece],
+    startIsRound: roundAtStart(pieces, piece, ends),
+    endIsRound: roundAtEnd(pieces, piece, ends),
+  };
+  addShapeStretches(into, shape, ax, ay, bx, by, slackMm);
+}
+
+/** One straight piece p→q of a strip: a rectangle, with a disc at each end that is an inner vertex or a seam. */
+export interface PieceShape {
+  readonly px: number;
+  readonly py: number;
+  readonly qx: number;
+  readonly qy: number;
+  readonly length: number;
+  readonly half: number;
+  readonly startIsRound: boolean;
+  readonly endIsRound: boolean;
+}
+
+/** The same for one shape. */
+export function addShapeStretches(
+  into: number[],
+  shape: PieceShape,
+  ax: number,
+  ay: number,
+  bx: number,
+  by: number,
+  slackMm: number,
+): void {
   const span = Math.hypot(bx - ax, by - ay);
   if (span === 0) return;
-  const half = pieces.half[piece];
-  const px = pieces.x1[piece];
-  const py = pieces.y1[piece];
-  const qx = pieces.x2[piece];
-  const qy = pieces.y2[piece];
-  const length = pieces.length[piece];
+  const { px, py, qx, qy, length, half, startIsRound, endIsRound } = shape;
   const ux = (qx - px) / length;
   const uy = (qy - py) / length;
   const dx = (bx - ax) / span;
@@ -68,8 +98,6 @@ export function addStripStretches(
   const v0 = (ay - py) * ux - (ax - px) * uy;
   const du = dx * ux + dy * uy;
   const dv = dy * ux - dx * uy;
-  const startIsRound = roundAtStart(pieces, piece, ends);
-  const endIsRound = roundAtEnd(pieces, piece, ends);
 
   const lateral = stretchWithin(v0, dv, -half, half, span);
   if (lateral !== null) {
@@ -112,11 +140,11 @@ export function coveredUpTo(stretches: readonly number[], from: number, slackMm:
 /** Far below any drawn length, far above rounding: gaps of this size between parts of one strip are no gaps. */
 const TINY_MM = 1e-9;
 
-function roundAtStart(pieces: Pieces, piece: number, ends: StripEnds | null): boolean {
+export function roundAtStart(pieces: Pieces, piece: number, ends: StripEnds | null): boolean {
   return startsAtVertex(pieces, piece) || (ends !== null && ends.seam[2 * pieces.centreline[piece]] === 1);
 }
 
-function roundAtEnd(pieces: Pieces, piece: number, ends: StripEnds | null): boolean {
+export function roundAtEnd(pieces: Pieces, piece: number, ends: StripEnds | null): boolean {
   return endsAtVertex(pieces, piece) || (ends !== null && ends.seam[2 * pieces.centreline[piece] + 1] === 1);
 }
 

@@ -5,7 +5,7 @@
 import { InputError } from '../errors.ts';
 import { PX_MM } from '../svg/lengths.ts';
 import { stretches } from '../svg/matrix.ts';
-import type { Group, Shape, SvgDrawing } from '../svg/types.ts';
+import type { Clip, Group, Shape, SvgDrawing } from '../svg/types.ts';
 import { quoted, ValueError } from '../svg/value-error.ts';
 import { type Flattened, flatten, MAX_COORDINATE, MAX_PIECES, type PieceBudget } from './flatten.ts';
 import { type Circle, ROUNDNESS, roundRing } from './roundness.ts';
@@ -145,8 +145,30 @@ function toStroke(shape: Shape, drawn: Drawn, flat: Flattened, laying: Laying): 
     linecap: shape.style.linecap,
     centrelines: flat.subpaths.map(({ points, closed, bendRadius }) => ({ points, closed, bendRadius })),
     dataDepth: shape.dataDepth ?? enclosingOf(shape, laying).dataDepth,
-    disguises: shape.style.disguises,
+    disguises: disguisesOf(shape, flat),
   };
+}
+
+/** A stroke that leaves the nested svg that it is drawn in is cut off there, as by a clip path. */
+function disguisesOf({ style, clips }: Shape, flat: Flattened): Stroke['disguises'] {
+  const isCutOff = clips.some((clip) => flat.subpaths.some(({ points }) => leaves(points, clip)));
+  return !isCutOff || style.disguises.includes('clip-path')
+    ? style.disguises
+    : [...style.disguises, 'clip-path'];
+}
+
+function leaves(points: Float64Array, { toRoot, x, y, width, height }: Clip): boolean {
+  const [a, b, c, d, e, f] = toRoot;
+  const determinant = a * d - b * c;
+  const slack = 1e-6 * Math.max(width, height);
+  for (let i = 0; i < points.length; i += 2) {
+    const dx = points[i] - e;
+    const dy = points[i + 1] - f;
+    const u = (d * dx - c * dy) / determinant - x;
+    const v = (a * dy - b * dx) / determinant - y;
+    if (u < -slack || v < -slack || u > width + slack || v > height + slack) return true;
+  }
+  return false;
 }
 
 /** Scaled by the full transform; null when that is no similarity, for then the width depends on the direction. */

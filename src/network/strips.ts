@@ -1,6 +1,7 @@
 import { pieceAt } from '../geometry/pieces.ts';
-import { addStripStretches, coveredUpTo, type StripEnds } from '../geometry/strip.ts';
+import { addStripStretches, coveredUpTo } from '../geometry/strip.ts';
 import type { Draft } from './draft.ts';
+import type { KeptStrips } from './kept-strips.ts';
 
 /**
  * The pieces near a piece, by the strip that they belong to. A strip is a key per centreline: its channel, or the first
@@ -44,7 +45,7 @@ const FEW = 32;
 
 /**
  * How far a centreline, walked from position `from` in the given direction, stays inside a strip without leaving it
- * (mm; 0 when it leaves at once). Walks piece by piece and looks only at the pieces near each.
+ * (mm; 0 when it leaves at once): as joined where `kept` is given, else as drawn. Walks piece by piece and looks only at the pieces near each.
  */
 export function reachInStrip(
   draft: Draft,
@@ -53,7 +54,7 @@ export function reachInStrip(
   direction: 1 | -1,
   strip: StripNeighbours,
   key: number,
-  ends: StripEnds | null,
+  kept: KeptStrips | null,
 ): number {
   const { pieces } = draft;
   const length = pieces.centrelineLength[centreline];
@@ -74,7 +75,7 @@ export function reachInStrip(
       draft.ends.x[startEnd],
       draft.ends.y[startEnd],
       draft.ends.extension[startEnd] - span,
-      ends,
+      kept,
     );
     walked = inside;
     if (inside < span - 1e-9) return inside;
@@ -99,7 +100,7 @@ export function reachInStrip(
       forward ? pieces.x2[piece] : pieces.x1[piece],
       forward ? pieces.y2[piece] : pieces.y1[piece],
       offset,
-      ends,
+      kept,
     );
     walked += inside;
     if (inside < pieces.length[piece] - offset - 1e-9) return walked;
@@ -121,11 +122,12 @@ function coverage(
   bx: number,
   by: number,
   offset: number,
-  ends: StripEnds | null,
+  kept: KeptStrips | null,
 ): number {
   const stretches: number[] = [];
   for (const piece of near) {
-    addStripStretches(stretches, draft.pieces, piece, ax, ay, bx, by, draft.slackMm, ends);
+    if (kept !== null) kept.addStretches(stretches, piece, ax, ay, bx, by);
+    else addStripStretches(stretches, draft.pieces, piece, ax, ay, bx, by, draft.slackMm, null);
   }
   return Math.max(0, coveredUpTo(stretches, offset, draft.slackMm) - offset);
 }

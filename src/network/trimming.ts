@@ -1,6 +1,7 @@
 import { pieceAt } from '../geometry/pieces.ts';
 import type { StripEnds } from '../geometry/strip.ts';
 import type { Draft } from './draft.ts';
+import { KeptStrips } from './kept-strips.ts';
 import { TRIM_BY_RULE, TRIM_TO_WALL } from './node-joints.ts';
 import type { Kept } from './overshoot.ts';
 import { type NodeStops, type Stops, stopsByNode } from './stops.ts';
@@ -38,6 +39,7 @@ export function findTrims(
   const memberStamp = new Int32Array(pieces.centrelineCount).fill(-1);
   const triedStamp = new Int32Array(pieces.centrelineCount).fill(-1);
   const neighbours = new StripNeighbours(draft, (c) => strips.group[c]);
+  const keptStrips = new KeptStrips(draft, kept, strips.ends);
   let arm = 0;
 
   for (let node = 0; node + 1 < byNode.first.length; node++) {
@@ -70,7 +72,7 @@ export function findTrims(
       triedStamp[group] = arm;
       const factor = trimFactor(draft, c, group);
       if (factor >= 1) return;
-      const length = reachInStrip(draft, c, position, direction, neighbours, group, strips.ends);
+      const length = reachInStrip(draft, c, position, direction, neighbours, group, keptStrips);
       if (length > 0) addTrim(c, position, direction, length, factor, resolved(node, factor));
     };
     if (end - begin <= FEW_MEMBERS) {

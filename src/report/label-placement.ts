@@ -49,39 +49,51 @@ const DISTANCES_MM: readonly number[] = [0, 1.5, 3.5, 6, 9, 13];
 
 /**
  * Places labels in the order given; a later one gives way. No label touches another, an obstacle, a channel or the rim of the area;
- * one that finds no such place is left out (undefined in the answer). Work per label is bounded.
+ * one that finds no such place is left out (undefined in the answer). A leader that crosses a channel or another leader is taken
+ * only when neither the label nor a shorter one of it can do without. Work per label is bounded.
  */
 export function placeLabels(
   wishes: readonly LabelWish[],
   ground: LabelGround,
 ): readonly (PlacedLabel | undefined)[] {
   const taken: Box[] = [...ground.obstacles];
-  const lines: Line[] = [...ground.lines];
+  const leaders: Line[] = [];
   return wishes.map((wish) => {
-    let placed: PlacedLabel | undefined;
-    for (
-      let next: LabelWish | undefined = wish;
-      next !== undefined && placed === undefined;
-      next = next.shorter
-    ) {
-      placed = placeOne(next, ground, taken, lines);
-    }
+    const placed =
+      placeShortening(wish, { ground, taken, leaders, crossing: 'none' }) ??
+      placeShortening(wish, { ground, taken, leaders, crossing: 'allowed' });
     if (placed !== undefined) {
       taken.push(placed.box);
-      if (placed.leader !== null) lines.push(placed.leader);
+      if (placed.leader !== null) leaders.push(placed.leader);
     }
     return placed;
   });
+}
+
+interface Surroundings {
+  readonly ground: LabelGround;
+  readonly taken: readonly Box[];
+  readonly leaders: readonly Line[];
+  /** Whether a leader may cross channels and other leaders. */
+  readonly crossing: 'none' | 'allowed';
+}
+
+function placeShortening(wish: LabelWish, around: Surroundings): PlacedLabel | undefined {
+  for (let next: LabelWish | undefined = wish; next !== undefined; next = next.shorter) {
+    const placed = placeOne(next, around);
+    if (placed !== undefined) return placed;
+  }
+  return undefined;
 }
 
 type Line = readonly [number, number, number, number];
 
 function placeOne(
   wish: LabelWish,
-  ground: LabelGround,
-  taken: readonly Box[],
-  lines: readonly Line[],
+  { ground, taken, leaders, crossing }: Surroundings,
 ): PlacedLabel | undefined {
+  const onLine = (box: Box, lines: readonly Line[]): boolean =>
+    lines.some(([x1, y1, x2, y2]) => segmentTouchesBox(x1, y1, x2, y2, 0.2, box));
   for (const distance of DISTANCES_MM) {
     for (const anchor of wish.anchors) {
       for (const [dx, dy] of DIRECTIONS) {
@@ -93,10 +105,14 @@ function placeOne(
           height: wish.heightMm,
         };
         if (!inside(box, ground.area) || taken.some((other) => overlap(box, other))) continue;
-        if (lines.some(([x1, y1, x2, y2]) => segmentTouchesBox(x1, y1, x2, y2, 0.2, box))) continue;
+        if (onLine(box, ground.lines) || onLine(box, leaders)) continue;
         if (touchesChannel(box, ground)) continue;
         const leader = distance === 0 ? null : leaderTo(box, anchor.x, anchor.y);
         if (leader !== null && taken.some((other) => crosses(leader, other, anchor))) continue;
+        if (leader !== null && crossing === 'none') {
+          if (leaders.some((other) => linesCross(leader, other))) continue;
+          if (crossesChannel(leader, anchor.clear, ground)) continue;
+        }
         return { wish, box, leader };
       }
     }
@@ -161,3 +177,28 @@ function crosses(
     anchor.x >= box.x && anchor.x <= box.x + box.width && anchor.y >= box.y && anchor.y <= box.y + box.height;
   return !own && segmentTouchesBox(x1, y1, x2, y2, 0.1, box);
 }
+
+function linesCross([ax, ay, bx, by]: Line, [cx, cy, dx, dy]: Line): boolean {
+  const side = (px: number, py: number, qx: number, qy: number, x: number, y: number): number =>
+    (qx - px) * (y - py) - (qy - py) * (x - px);
+  return (
+    side(ax, ay, bx, by, cx, cy) * side(ax, ay, bx, by, dx, dy) < 0 &&
+    side(cx, cy, dx, dy, ax, ay) * side(cx, cy, dx, dy, bx, by) < 0
+  );
+}
+
+/** Whether a leader meets a channel before it is as near its anchor as the anchor's own strip or hole reaches. Looked at in steps. */
+function crossesChannel([x1, y1, x2, y2]: Line, clear: number, ground: LabelGround): boolean {
+  const free = Math.hypot(x2 - x1, y2 - y1) - clear;
+  const steps = Math.ceil(free / LEADER_STEP_MM);
+  for (let i = 0; i < steps; i++) {
+    const share = ((i + 0.5) / steps) * (free / (free + clear));
+    const half = LEADER_STEP_MM / 4;
+    const at = { x: x1 + (x2 - x1) * share - half, y: y1 + (y2 - y1) * share - half };
+    if (touchesChannel({ ...at, width: 2 * half, height: 2 * half }, ground)) return true;
+  }
+  return false;
+}
+
+/** Finer than the thinnest painted channel. */
+const LEADER_STEP_MM = 0.4;

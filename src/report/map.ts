@@ -81,6 +81,8 @@ export interface MapDrawing {
   readonly labels: readonly MapLabel[];
   /** How many reaches that have a label of their own found no room or were beyond the bound. */
   readonly unlabelled: number;
+  /** How many ports found no room for their name. */
+  readonly unnamedPorts: number;
   readonly scaleBar: ScaleBar;
   readonly legend: MapLegend | null;
   /** Stated below: view, scale, least painted width. */
@@ -120,6 +122,7 @@ export const QUANTITY_SHOWN: Record<MapQuantity, Shown> = {
 };
 
 const LABEL_BOUND = 160;
+const PORT_LABEL_BOUND = 400;
 const FINDING_BOUND = 99;
 
 /** Draws one case as a map coloured by a quantity. Time and size grow linearly with the chip; labels are bounded. */
@@ -152,6 +155,7 @@ export function drawMap(one: ReportedCase, geometry: ChipGeometry, options: MapO
     markers,
     labels: labels.placed,
     unlabelled: labels.unlabelled,
+    unnamedPorts: labels.unnamedPorts,
     scaleBar: scaleBarOf(frame, options),
     legend: scaleOfColour === null ? null : legendOf(scaleOfColour, unit, values, frame, options),
     caption: captionOf(frame),
@@ -363,7 +367,7 @@ function labelsOf(
   values: Float64Array,
   unit: Unit,
   options: MapOptions,
-): { placed: MapLabel[]; unlabelled: number } {
+): { placed: MapLabel[]; unlabelled: number; unnamedPorts: number } {
   const size = options.labelSizeMm;
   const wish = (text: string, anchors: LabelWish['anchors']): LabelWish => ({
     text,
@@ -371,7 +375,7 @@ function labelsOf(
     heightMm: 1.25 * size,
     anchors,
   });
-  const portWishes = holes.slice(0, LABEL_BOUND).map((hole, port) => {
+  const portWishes = holes.slice(0, PORT_LABEL_BOUND).map((hole, port) => {
     const anchors = [{ x: hole.x, y: hole.y, clear: hole.radiusMm }];
     // a port is named, if need be by the first letters of its name
     const [full, ...shorter] = [
@@ -396,22 +400,38 @@ function labelsOf(
     width: 2 * radiusMm,
     height: 2 * radiusMm,
   }));
-  const placed = placeLabels([...portWishes, ...findingWishes, ...reachWishes], {
-    area: { x: 0, y: 0, width: frame.figureWidthMm, height: frame.figureHeightMm - frame.footMm },
-    geometry,
-    toDrawing: frame.toDrawing,
-    scale: frame.scale,
-    leastHalfWidthMm: 0.24,
-    obstacles,
-    lines: edgeLines(one, frame),
-  });
-  const kindOf = (i: number): MapLabel['kind'] =>
-    i < portWishes.length ? 'port' : i < portWishes.length + findingWishes.length ? 'finding' : 'reach';
+  // of very many ports the first are named, then the findings are numbered, then the others take what room is left
+  const wishes = [
+    ...ofKind('port', portWishes.slice(0, LABEL_BOUND)),
+    ...ofKind('finding', findingWishes),
+    ...ofKind('port', portWishes.slice(LABEL_BOUND)),
+    ...ofKind('reach', reachWishes),
+  ];
+  const placed = placeLabels(
+    wishes.map(({ wish: wanted }) => wanted),
+    {
+      area: { x: 0, y: 0, width: frame.figureWidthMm, height: frame.figureHeightMm - frame.footMm },
+      geometry,
+      toDrawing: frame.toDrawing,
+      scale: frame.scale,
+      leastHalfWidthMm: 0.24,
+      obstacles,
+      lines: edgeLines(one, frame),
+    },
+  );
   const labels = placed.flatMap((label, i) =>
-    label === undefined ? [] : [mapLabel(label, kindOf(i), size)],
+    label === undefined ? [] : [mapLabel(label, wishes[i].kind, size)],
   );
   const labelled = labels.filter(({ kind }) => kind === 'reach').length;
-  return { placed: labels, unlabelled: reaches.of - labelled };
+  const named = labels.filter(({ kind }) => kind === 'port').length;
+  return { placed: labels, unlabelled: reaches.of - labelled, unnamedPorts: holes.length - named };
+}
+
+function ofKind(
+  kind: MapLabel['kind'],
+  wishes: readonly LabelWish[],
+): readonly { readonly kind: MapLabel['kind']; readonly wish: LabelWish }[] {
+  return wishes.map((wish) => ({ kind, wish }));
 }
 
 /** The chip edge's sides; an edge drawn finely is left out, labels may then cross it. */
@@ -455,10 +475,19 @@ function reachText(
   return Number.isNaN(value) ? name : `${name} ${formatNumber(value / unit.si)}`;
 }
 
-/** The first characters of a readable name, with an ellipsis where it is longer. */
+/** The first characters of a readable name, with an ellipsis where it is longer. A character's code "[U+1F9EA]" is never cut. */
 export function shortName(name: string, readable: (name: string) => string, length = 24): string {
-  const characters = [...readable(name)];
-  return characters.length <= length ? characters.join('') : `${characters.slice(0, length - 1).join('')}…`;
+  const text = readable(name);
+  if ([...text].length <= length) return text;
+  let short = '';
+  let used = 0;
+  for (const [piece] of text.matchAll(/\[U\+[0-9A-F]{4,6}\]|[\s\S]/gu)) {
+    used += [...piece].length;
+    // a few letters at least, be one a code
+    if (used > length - 1 && [...short].length >= length / 2) break;
+    short += piece;
+  }
+  return `${short}…`;
 }
 
 function findingMarkers({ part }: ReportedCase, frame: Frame): { number: number; x: number; y: number }[] {
@@ -579,6 +608,15 @@ function spacedTicks(
       kept.push(tick);
   }
   return kept;
+}
+
+/** What stands under a map: how it is seen, and how many names found no room. */
+export function mapNotes({ caption, unlabelled, unnamedPorts }: MapDrawing): string {
+  const missing = [
+    unnamedPorts === 0 ? '' : `${unnamedPorts} ${unnamedPorts === 1 ? 'port' : 'ports'}`,
+    unlabelled === 0 ? '' : `${unlabelled} ${unlabelled === 1 ? 'reach' : 'reaches'}`,
+  ].filter((text) => text !== '');
+  return missing.length === 0 ? caption : `${caption} No room for the names of ${missing.join(' and ')}.`;
 }
 
 function captionOf(frame: Frame): string {

@@ -92,7 +92,7 @@ export function wrapText(text: string, width: number): string[] {
 export function wrapMeasured(text: string, width: number, measure: (text: string) => number): string[] {
   const lines: string[] = [];
   let line = '';
-  for (const word of text.split(' ')) {
+  for (const word of wordsOf(text)) {
     const longer = line === '' ? word : `${line} ${word}`;
     if (measure(longer) <= width) {
       line = longer;
@@ -105,6 +105,20 @@ export function wrapMeasured(text: string, width: number, measure: (text: string
   }
   lines.push(line);
   return lines;
+}
+
+const UNIT = /^(?:%|°C|(?:[kMmµn]?(?:Pa|bar|m|s|L)|psi|mmHg|min|h|dyn)(?:[²³/·]\S*)?)[.,;:)]*$/;
+
+/** What spaces part, a number and the unit behind it being one word. */
+function wordsOf(text: string): readonly string[] {
+  const words: string[] = [];
+  for (const word of text.split(' ')) {
+    const before = words.at(-1);
+    if (before !== undefined && /\d$/.test(before) && UNIT.test(word))
+      words[words.length - 1] = `${before} ${word}`;
+    else words.push(word);
+  }
+  return words;
 }
 
 function cutWord(word: string, width: number, measure: (text: string) => number): string[] {

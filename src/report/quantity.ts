@@ -186,6 +186,14 @@ export function formatShare(share: number | null): string {
   return share === null ? '–' : `${formatNumber(share * 100)} %`;
 }
 
+/** A share that bounds something, as per cent: two digits, rounded up so that it still bounds. */
+export function formatBound(share: number | null): string {
+  if (share === null || share === 0) return formatShare(share);
+  const percent = Math.abs(share) * 100;
+  const step = 10 ** (Math.floor(Math.log10(percent)) - 1);
+  return `${formatNumber(Math.ceil(percent / step - 1e-9) * step, 2)} %`;
+}
+
 /** Millimetres in the drawing, to 0.001 mm. */
 export function formatMm(mm: number): string {
   const text = mm.toFixed(3).replace(/\.?0+$/, '');

@@ -121,8 +121,8 @@ export function windowTexts({ settings }: Channel, show: Show): readonly string[
 }
 
 function rangeText(shown: Shown, { min, max }: Window, show: Show): string {
-  if (min === null) return `at most ${show.text(shown, max)}`;
-  if (max === null) return `at least ${show.text(shown, min)}`;
+  if (min === null) return `≤ ${show.text(shown, max)}`;
+  if (max === null) return `≥ ${show.text(shown, min)}`;
   const unit = show.unit(shown, Math.max(Math.abs(min), Math.abs(max)));
   return `${formatNumber(min / unit.si)} to ${formatNumber(max / unit.si)} ${unit.text}`;
 }

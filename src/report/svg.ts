@@ -1,4 +1,4 @@
-import { drawMap, type MapDrawing, type MapLabel, type MapStroke, QUANTITY_TITLES } from './map.ts';
+import { drawMap, type MapDrawing, type MapLabel, type MapStroke, mapNotes, QUANTITY_TITLES } from './map.ts';
 import { chipGeometry } from './map-geometry.ts';
 import { cleanText, displayWidth } from './plain-text.ts';
 import type { MapQuantity } from './reach-values.ts';
@@ -42,7 +42,7 @@ export function svgPicture(one: ReportedCase, options: SvgOptions): string {
     '<?xml version="1.0" encoding="UTF-8"?>\n',
     `<svg xmlns="http://www.w3.org/2000/svg" width="${mm(drawing.widthMm)}mm" height="${mm(height)}mm" viewBox="0 0 ${mm(drawing.widthMm)} ${mm(height)}" font-family="DejaVu Sans, Verdana, sans-serif" font-size="${LABEL_MM}">\n`,
     `<title>${escapeXml(title)}</title>\n`,
-    `<desc>${escapeXml(`${verdictLine(one.part.verdict, one.part.counts)}. ${drawing.caption}`)}</desc>\n`,
+    `<desc>${escapeXml(`${verdictLine(one.part.verdict, one.part.counts)}. ${mapNotes(drawing)}`)}</desc>\n`,
     `<rect width="${mm(drawing.widthMm)}" height="${mm(height)}" fill="#ffffff"/>\n`,
     ...edge(drawing),
     ...ground(drawing),

@@ -5,7 +5,9 @@ export function verdictLine(verdict: 'ready' | 'hold', counts: CountsRow): strin
   return `${verdict}: ${verdictCounts(counts)}`;
 }
 
-export function verdictCounts(counts: CountsRow): string {
+export function verdictCounts(
+  counts: Pick<CountsRow, 'blockers' | 'cautions' | 'accepted' | 'rules_not_run'>,
+): string {
   return [
     plural(counts.blockers, 'blocker'),
     plural(counts.cautions, 'caution'),

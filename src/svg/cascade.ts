@@ -42,6 +42,7 @@ const PRESENTATION_ATTRIBUTES: ReadonlySet<string> = new Set([
   'clip-path',
   'mask',
   'filter',
+  'overflow',
   'vector-effect',
   'transform',
   'transform-origin',

@@ -81,6 +81,18 @@ export interface Shape {
   readonly toRoot: Matrix;
   readonly path: readonly PathCommand[];
   readonly style: ShapeStyle;
+  /** Nested svg and symbol round the shape that show only what lies within them. */
+  readonly clips: readonly Clip[];
+}
+
+/** A rectangle outside of which nothing is drawn. */
+export interface Clip {
+  /** Coordinates of the rectangle → root user units. */
+  readonly toRoot: Matrix;
+  readonly x: number;
+  readonly y: number;
+  readonly width: number;
+  readonly height: number;
 }
 
 export interface SvgDrawing {

@@ -20,7 +20,7 @@ import {
 } from './style.ts';
 import { parseTransform, parseTransformOrigin } from './transform.ts';
 import { attribute, prefixedAttribute, type XmlElement } from './tree.ts';
-import type { Group, Matrix, PathCommand, Shape, ShapeStyle, ShapeTag } from './types.ts';
+import type { Clip, Group, Matrix, PathCommand, Shape, ShapeStyle, ShapeTag } from './types.ts';
 import { quoted, ValueError } from './value-error.ts';
 import { parseAspectRatio, parseViewBox, type Viewport, viewBoxTransform } from './viewport.ts';
 
@@ -64,6 +64,7 @@ interface Context extends Surroundings {
   readonly use: XmlElement | null;
   /** What the innermost `use` round the element draws; null outside of one. */
   readonly copyOf: XmlElement | null;
+  readonly clips: readonly Clip[];
 }
 
 /** The enclosing groups that have a name or a depth, innermost first; listed once for all shapes in them. */
@@ -117,6 +118,8 @@ type PassedOver = string | null;
 
 const NO_GROUPS: readonly Group[] = [];
 
+const NO_CLIPS: readonly Clip[] = [];
+
 class Walk {
   readonly shapes: Shape[] = [];
   readonly unread = new Map<string, number>();
@@ -150,7 +153,7 @@ class Walk {
     const depth = attribute(root, 'data-depth') ?? null;
     const chain =
       depth === null ? null : { group: { name: null, dataDepth: depth }, outer: null, list: null };
-    this.#push(root, root.children, { ...surroundings, chain, use: null, copyOf: null });
+    this.#push(root, root.children, { ...surroundings, chain, use: null, copyOf: null, clips: NO_CLIPS });
   }
 
   leave(frame: Frame): void {
@@ -188,6 +191,8 @@ class Walk {
     const condition = unmetCondition(element);
     if (condition !== null) return condition;
     const css = this.#cascade.css(element, context.copyOf);
+    if (css?.has('all'))
+      throw new ValueError('the CSS property all is not read; set each property by itself');
     const specified = this.#cascade.specified(element, css);
     if (ownKeyword(specified, 'display', 'inline') === 'none') return null;
     const style = inherit(context.style, specified);
@@ -198,7 +203,7 @@ class Walk {
     const inner: Context = { ...context, toRoot, style, disguises };
     // SHAPE_TAGS holds ShapeTags only.
     if (isShape) return this.#drawShape(element, name as ShapeTag, css, specified, inner);
-    return this.#drawContainer(element, css, inner);
+    return this.#drawContainer(element, css, specified, inner);
   }
 
   #drawShape(
@@ -232,14 +237,15 @@ class Walk {
       toRoot: context.toRoot,
       path,
       style: this.#styleOf(tag, specified, context),
+      clips: context.clips,
     });
     return null;
   }
 
-  #drawContainer(element: XmlElement, css: Specified, context: Context): PassedOver {
+  #drawContainer(element: XmlElement, css: Specified, specified: Specified, context: Context): PassedOver {
     const { name } = element;
     if (name === 'use') return this.#drawUse(element, css, context);
-    if (name === 'svg' || name === 'symbol') return this.#drawViewport(element, css, context);
+    if (name === 'svg' || name === 'symbol') return this.#drawViewport(element, css, specified, context);
     const elements = name === 'switch' ? this.#chosen(element) : element.children;
     this.#push(element, elements, { ...context, use: null, chain: extend(context.chain, element) });
     return null;
@@ -278,7 +284,7 @@ class Walk {
     return null;
   }
 
-  #drawViewport(element: XmlElement, css: Specified, context: Context): PassedOver {
+  #drawViewport(element: XmlElement, css: Specified, specified: Specified, context: Context): PassedOver {
     const { viewport, use } = context;
     if (element.name === 'svg') refuseCssSize(css, 'x', 'y', 'width', 'height');
     // SVG 2, 5.6.2: the width and height of a use replace those of the svg or symbol that it draws.
@@ -296,6 +302,9 @@ class Walk {
     if (viewBox === 'disabled') return 'svg without size';
     let inner: Matrix = translation(x, y);
     let own: Viewport | null = width === null || height === null ? null : { width, height };
+    const showsAll = /^(?:visible|auto)$/.test(ownKeyword(specified, 'overflow', 'hidden'));
+    const clips =
+      own === null || showsAll ? context.clips : [...context.clips, { toRoot: context.toRoot, x, y, ...own }];
     if (viewBox !== null) {
       if (own === null)
         throw new ValueError('it has a viewBox but no width and height, and neither has the drawing');
@@ -305,7 +314,7 @@ class Walk {
     }
     const toRoot = multiply(context.toRoot, inner);
     const chain = extend(context.chain, element);
-    this.#push(element, element.children, { ...context, toRoot, viewport: own, chain, use: null });
+    this.#push(element, element.children, { ...context, toRoot, viewport: own, chain, clips, use: null });
     return null;
   }
 

@@ -47,6 +47,21 @@ describe('size of a unit', () => {
   });
 });
 
+describe('widths and depths', () => {
+  it('are equal when they were meant so, whatever rounding a transform or a unit left', () => {
+    const { channels } = chipOf(
+      [
+        stroke('a', [0, 0, 1, 0], { width: 0.7, dataDepth: '65 um' }),
+        stroke('b', [1, 0, 2, 0], { width: 7 * 0.1, dataDepth: '0.065 mm' }),
+      ],
+      SHEET,
+    );
+    expect(7 * 0.1).not.toBe(0.7);
+    expect(channels[1].ductWidthMm).toBe(channels[0].ductWidthMm);
+    expect(channels[1].depthMm).toBe(channels[0].depthMm);
+  });
+});
+
 describe('chip edge', () => {
   it('may be a stroke, a filled shape, a dashed one or a circle, and is then never anything else', () => {
     const ring = rectangle(0, 0, 76, 26);

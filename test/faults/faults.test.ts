@@ -32,7 +32,7 @@ describe.skipIf(!existsSync(BIN))('the program as a process (skipped without dis
     chmodSync(folder, 0o777);
     writeFileSync(join(folder, 'chip.svg'), CHIP);
     writeFileSync(join(folder, 'chip.run.yaml'), SHEET);
-    const { svg, sheet } = ladder(400);
+    const { svg, sheet } = ladder(200);
     writeFileSync(join(folder, 'large.svg'), svg);
     writeFileSync(join(folder, 'large.run.yaml'), sheet);
   });
@@ -75,10 +75,13 @@ describe.skipIf(!existsSync(BIN))('the program as a process (skipped without dis
       }
     });
 
-    it('behind stdout ends with exit code 3', () => {
-      const { stdout } = shell('"$NODE" "$BIN" check chip.svg --json 2>&1 >/dev/full; echo "code $?"');
-      expect(stdout).toMatch(/^rillcheck: .*stdout.*no space left.*\ncode 3\n$/);
-    });
+    it.each(['check chip.svg --json', 'check chip.svg -f none', '--help', '--version'])(
+      'behind stdout ends with exit code 3: %s',
+      (argv) => {
+        const { stdout } = shell(`"$NODE" "$BIN" ${argv} 2>&1 >/dev/full; echo "code $?"`);
+        expect(stdout).toMatch(/^rillcheck: .*stdout.*no space left.*\ncode 3\n$/);
+      },
+    );
 
     it('or a file size limit: no report in part', () => {
       const { stdout } = shell(

@@ -13,7 +13,7 @@ const place = fc.oneof(
 
 const width = fc.oneof(
   { weight: 6, arbitrary: fc.constantFrom(0.1, 0.2, 0.2, 0.5, 1, 3) },
-  fc.constantFrom(0, 1e-6, 40),
+  fc.constantFrom(0, 1e-6, 1e-4, 40),
 );
 
 const command = fc.oneof(

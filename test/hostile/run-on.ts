@@ -2,6 +2,14 @@ import { mkdirSync, mkdtempSync, readdirSync, readFileSync, rmSync, writeFileSyn
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { run } from '../../src/cli.ts';
+// Loaded now, so that the first run is not timed while it loads what it needs.
+import '../../src/commands/check.ts';
+import '../../src/commands/draft.ts';
+import '../../src/commands/pump.ts';
+import '../../src/commands/section.ts';
+import '../../src/commands/spread.ts';
+import '../../src/report/pdf/document.ts';
+import '../../src/report/svg.ts';
 import type { Io } from '../../src/commands/io.ts';
 
 export interface Ran {

@@ -195,3 +195,13 @@ it('a shape out of all bounds is refused by name', () => {
   );
   expect(far('<circle cx="1e13" r="1"/>')).toThrow('chip.svg: <circle> number 1: it lies beyond');
 });
+
+it('a stroke that leaves its nested svg says so, one within it or with overflow shown does not', () => {
+  const nested = (attributes: string, d: string): string =>
+    `<svg x="10" y="5" width="20" height="10" viewBox="0 0 40 20" ${attributes}><path ${S} d="${d}"/></svg>`;
+  expect(strokeOf(nested('', 'M0 10h40')).disguises).toEqual([]);
+  expect(strokeOf(nested('', 'M0 10h41')).disguises).toEqual(['clip-path']);
+  expect(strokeOf(nested('transform="rotate(30)"', 'M20 -1v9')).disguises).toEqual(['clip-path']);
+  expect(strokeOf(nested('overflow="visible"', 'M0 10h41')).disguises).toEqual([]);
+  expect(strokeOf(nested('style="overflow: auto"', 'M0 10h41')).disguises).toEqual([]);
+});

@@ -367,6 +367,127 @@ describe('rule 7: reaches', () => {
   });
 });
 
+describe('awkward drawings', () => {
+  it('leaves out the end piece that overshoots an earlier turn of its own channel', () => {
+    const { reaches, nodes } = describeNetwork([
+      { name: 'a', widthMm: 0.2, lines: [[0, 0, 5, 0, 5, 3, 2, 3, 2, -0.05]] },
+    ]);
+    expect(Object.keys(reaches)).toEqual(['a:1', 'a:2']);
+    expect(reaches['a:2'].duct).toBeCloseTo(12, 12);
+    expect(Object.values(nodes).sort()).toEqual(['end', 'junction']);
+  });
+
+  it('joins an end that overshoots a centreline to no farther strip that also holds it', () => {
+    const others: ChannelSpec[] = [
+      { name: 'main', widthMm: 0.1, lines: [[0, 0, 10, 0]] },
+      { name: 'chamber', widthMm: 2, lines: [[5.5, 0, 5.5, -9]] },
+    ];
+    const past = describeNetwork([...others, { name: 'side', widthMm: 0.1, lines: [[5, 4, 5, -0.02]] }]);
+    const exact = describeNetwork([...others, { name: 'side', widthMm: 0.1, lines: [[5, 4, 5, 0]] }]);
+    expect(past.reaches).toEqual(exact.reaches);
+  });
+
+  it('joins two ends that miss each other sideways by one piece, of the wider channel or else the first drawn', () => {
+    const equal = describeNetwork([
+      { name: 'a', widthMm: 0.1, lines: [[0, 0, 5, 0]] },
+      { name: 'b', widthMm: 0.1, lines: [[5, 0.03, 9, 0.03]] },
+    ]).reaches;
+    expect(Object.keys(equal)).toEqual(['a', 'b']);
+    expect(equal.a.duct).toBeCloseTo(5.03, 12);
+    expect(equal.b.duct).toBeCloseTo(4, 12);
+    const wider = describeNetwork([
+      { name: 'a', widthMm: 0.1, lines: [[0, 0, 5, 0]] },
+      { name: 'b', widthMm: 0.2, lines: [[5, 0.03, 9, 0.03]] },
+    ]).reaches;
+    expect(wider.a.duct).toBeCloseTo(5, 12);
+    expect(wider.b.duct).toBeCloseTo(4.03, 12);
+  });
+
+  it('keeps the whole length of a ring that another stroke meets within slack of its first point', () => {
+    for (const line of [
+      [0.0005, -4, 0.0005, 0],
+      [-4, 0.0005, 0, 0.0005],
+      [0, -4, 0, 0],
+    ]) {
+      const { reaches } = describeNetwork([
+        { name: 'ring', widthMm: 0.1, closed: true, lines: [[0, 0, 3, 0, 3, 3, 0, 3, 0, 0]] },
+        { name: 'x', widthMm: 0.1, lines: [line] },
+      ]);
+      expect(Object.keys(reaches)).toEqual(['ring', 'x']);
+      expect(reaches.ring.duct).toBeCloseTo(12, 12);
+    }
+  });
+
+  it('keeps the length of a channel drawn as many strokes shorter than the slack', () => {
+    const strokes = Array.from({ length: 1000 }, (_, k) => ({
+      name: `s${k}`,
+      widthMm: 0.1,
+      lines: [[k * 0.0008, 0, (k + 1) * 0.0008, 0]],
+    }));
+    const { network } = describeNetwork([
+      { name: 'a', widthMm: 0.1, lines: [[-3, 0, 0, 0]] },
+      ...strokes,
+      { name: 'b', widthMm: 0.1, lines: [[0.8, 0, 5, 0]] },
+    ]);
+    expect(network.reachCount).toBe(1002);
+    expect(network.reachDuctMm.reduce((sum, length) => sum + length, 0)).toBeCloseTo(8, 9);
+  });
+
+  for (const [what, branch] of [
+    ['a deeper', { widthMm: 0.1, depthMm: 0.2 }],
+    ['a wider', { widthMm: 0.6 }],
+  ] as const) {
+    for (const [how, slant] of [
+      ['square', 0],
+      ['at 45°', 1],
+    ] as const) {
+      it(`trims the channel that ${what} branch meets ${how} the same, however far the branch was drawn`, () => {
+        const ductsFor = (y: number) => {
+          const line = [5 + slant * 4, 4, 5 + slant * y, y];
+          const { reaches } = describeNetwork([MAIN, { name: 'side', ...branch, lines: [line] }], [IN, OUT]);
+          return ['main:1', 'main:2', 'side'].map((name) => reaches[name].duct);
+        };
+        const exact = ductsFor(0);
+        expect(exact[0] + exact[1]).toBeLessThan(9 - 0.04);
+        for (const y of [0.2, 0.1, 0.05, -0.15]) {
+          ductsFor(y).forEach((duct, k) => {
+            expect(duct).toBeCloseTo(exact[k], 9);
+          });
+        }
+      });
+    }
+  }
+
+  it('joins a circle over the walls of two subpaths to both, as over two strokes', () => {
+    const lines = [
+      [0, 0, 10, 0],
+      [0, 1, 10, 1],
+    ];
+    const { reaches } = describeNetwork(
+      [{ name: 'a', widthMm: 0.4, lines }],
+      [{ name: 'p', x: 5, y: 0.5, radiusMm: 0.35 }],
+    );
+    expect(Object.values(reaches).map(({ from, to }) => from === 'p' || to === 'p')).toEqual([
+      true,
+      true,
+      true,
+      true,
+    ]);
+  });
+
+  it('loses nothing where a circle touches the wall near a seam', () => {
+    const { reaches } = describeNetwork(
+      [
+        { name: 'a', widthMm: 0.4, lines: [[0, 0, 5, 0]] },
+        { name: 'b', widthMm: 0.4, lines: [[5, 0, 10, 0]] },
+      ],
+      [{ name: 'p', x: 5.1, y: 0.45, radiusMm: 0.3 }],
+    );
+    expect(reaches.a.duct + reaches['b:1'].duct).toBeCloseTo(5.1, 12);
+    expect(reaches['b:2'].duct).toBeCloseTo(4.9, 12);
+  });
+});
+
 describe('the drawing turned, mirrored and shifted', () => {
   const channels: ChannelSpec[] = [
     { name: 'main', widthMm: 0.4, lines: [[0, 0, 10, 0]] },

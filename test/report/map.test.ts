@@ -1,6 +1,6 @@
 import { describe, expect, test } from 'vitest';
 import { colourScale, legendTicks, PALETTE } from '../../src/report/colour-scale.ts';
-import { drawMap, type MapDrawing, type MapOptions } from '../../src/report/map.ts';
+import { drawMap, type MapDrawing, type MapOptions, mapNotes, shortName } from '../../src/report/map.ts';
 import { type Box, chipGeometry, segmentTouchesBox } from '../../src/report/map-geometry.ts';
 import { displayWidth } from '../../src/report/plain-text.ts';
 import { buildReport, type ReportedCase } from '../../src/report/report.ts';
@@ -106,6 +106,54 @@ describe('a map', () => {
       }
     },
   );
+
+  test('leads from a port to its name past the channels, and by fewer letters rather than across one', async () => {
+    const [state] = (await demoReport('dilution')).cases;
+    const drawing = draw(state, { quantity: 'flow', heightMm: 80 });
+    const ports = drawing.labels.filter(({ kind }) => kind === 'port');
+    expect(ports).toHaveLength(5);
+    for (const { text, leader } of ports) {
+      if (leader === null) continue;
+      const [x1, y1, x2, y2] = leader;
+      const length = Math.hypot(x2 - x1, y2 - y1);
+      const radius = drawing.holes[0].radiusMm;
+      // samples of the leader up to the rim of its hole
+      for (let along = 0; along < length - radius; along += 0.2) {
+        const x = x1 + ((x2 - x1) * along) / length;
+        const y = y1 + ((y2 - y1) * along) / length;
+        for (const { points } of drawing.ground)
+          for (let k = 0; k + 3 < points.length; k += 2)
+            expect(
+              segmentTouchesBox(points[k], points[k + 1], points[k + 2], points[k + 3], 0, {
+                x: x - 0.05,
+                y: y - 0.05,
+                width: 0.1,
+                height: 0.1,
+              }),
+              text,
+            ).toBe(false);
+      }
+    }
+  });
+
+  test('never cuts the code of a character that the font lacks', () => {
+    const same = (name: string): string => name;
+    expect(shortName('p [U+1F9EB][U+1F52C] emoji', same, 24)).toBe('p [U+1F9EB][U+1F52C] em…');
+    expect(shortName('p [U+1F9EB][U+1F52C] emoji', same, 16)).toBe('p [U+1F9EB]…');
+    expect(shortName('p [U+1F9EB][U+1F52C] emoji', same, 8)).toBe('p [U+1F9EB]…');
+    expect(shortName('lane', same, 8)).toBe('lane');
+  });
+
+  test('says how many ports and reaches found no room for their names', () => {
+    const drawing = draw(one);
+    expect(mapNotes({ ...drawing, unnamedPorts: 0, unlabelled: 0 })).toBe(drawing.caption);
+    expect(mapNotes({ ...drawing, unnamedPorts: 1, unlabelled: 3 })).toContain(
+      'No room for the names of 1 port and 3 reaches.',
+    );
+    const small = draw(one, { widthMm: 12, heightMm: 20 });
+    const named = small.labels.filter(({ kind }) => kind === 'port').length;
+    expect(small.unnamedPorts).toBe(small.holes.length - named);
+  });
 
   test('names a port by its first letters where its whole name finds no room', () => {
     const [long] = buildReport(sampleInput({ names: { feed: 'a-name-as-long-as-it-gets-in-here' } })).cases;

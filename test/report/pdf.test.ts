@@ -156,6 +156,11 @@ describe('the PDF', () => {
     ]);
     expect(allText(pdf)).toContain('2 cases: hold');
     expectTidy(pdf);
+    // one verdict, signed once and on page 1, with what it is of
+    const first = pageText(pdf.pages[0]);
+    for (const part of ['HOLD', 'drawing C-200, revision B', 'a'.repeat(64), 'b'.repeat(64), 'approved'])
+      expect(first).toContain(part);
+    expect(pdf.pages.filter((page) => pageText(page).includes('approved'))).toHaveLength(1);
   });
 
   test.each(['a4', 'letter'] as const)(
@@ -193,6 +198,12 @@ describe('the PDF', () => {
     expect(text).not.toContain('\u202e');
     expect(pageText(pdf.pages[0])).toMatch(/T{20,}…/);
     expectTidy(pdf);
+  });
+
+  test('words of a right-to-left name read back in the order they are written', async () => {
+    // a reader orders text by where it stands, so words set the wrong way round come back swapped
+    const pdf = await read(buildReport(sampleInput({ names: { title: 'p קצר ארוך end' } })));
+    expect(pageText(pdf.pages[0])).toContain('קצר ארוך');
   });
 
   test('uses no glyph that its font lacks', async () => {

@@ -29,6 +29,12 @@ describe('plain text', () => {
     );
   });
 
+  test('wrapped keeps a number and its unit on one line', () => {
+    expect(wrapText('mean residence time 33.6 s', 25)).toEqual(['mean residence time', '33.6 s']);
+    expect(wrapText('send it 27.02 µL/min, or', 15)).toEqual(['send it', '27.02 µL/min,', 'or']);
+    expect(wrapText('in 2 reaches', 5)).toEqual(['in 2', 'reach', 'es']);
+  });
+
   test('cleaned is one line without control, bidi or invisible characters', () => {
     fc.assert(
       fc.property(fc.string({ unit: 'binary' }), (text) => {

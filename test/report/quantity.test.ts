@@ -1,5 +1,5 @@
 import { describe, expect, test } from 'vitest';
-import { formatMm, formatNumber, showOf } from '../../src/report/quantity.ts';
+import { formatBound, formatMm, formatNumber, showOf } from '../../src/report/quantity.ts';
 
 describe('numbers for people', () => {
   test.each([
@@ -27,6 +27,18 @@ describe('numbers for people', () => {
       expect(Math.abs(Number(text) - value)).toBeLessThanOrEqual(Math.abs(value) * 5.0001e-4);
       expect(text.replace(/e.*/, '').replace(/[-.]/g, '').replace(/^0+/, '').length).toBeLessThanOrEqual(6);
     }
+  });
+
+  test.each([
+    [null, '–'],
+    [0, '0 %'],
+    [0.004841, '0.49 %'],
+    [0.05231, '5.3 %'],
+    [0.0996, '10 %'],
+    [0.5, '50 %'],
+    [1.234, '130 %'],
+  ])('a bound of %d is written %s, two digits and never below it', (share, text) => {
+    expect(formatBound(share)).toBe(text);
   });
 
   test('refuse what is no number', () => {

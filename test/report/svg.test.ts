@@ -61,6 +61,12 @@ describe('the SVG picture', () => {
     expect(readSvg(text, 'picture.svg').shapes.length).toBeGreaterThan(20);
   });
 
+  test('keeps the value behind a right-to-left name by a left-to-right mark', () => {
+    const text = picture({ names: { lower: 'קצר' } });
+    expect(text).toMatch(/>קצר\u200e 0\.\d+<\/text>/);
+    expect(picture()).not.toContain('\u200e');
+  });
+
   test('escapes what XML can not hold', () => {
     expect(escapeXml('a<b>&"\'\u0001\uffff')).toBe('a&lt;b&gt;&amp;&quot;&#39;\ufffd\ufffd');
   });

@@ -21,8 +21,8 @@ describe('the terminal summary', () => {
       lane-1/2   35.2 µL/min    0.3464 Pa  0.3973 Pa    2.966 s  shear 0.05 to 0.5 Pa over 80 %
       lane-2    35.73 µL/min    0.3516 Pa  0.4033 Pa    5.757 s  shear 0.05 to 0.5 Pa over 80 %
 
-      1 blocker thin-wall: 31 µm of material between lane-1 and lane-2 over 8 mm; min_wall is 40 µm (30, 6
-        mm)
+      1 blocker thin-wall: 31 µm of material between lane-1 and lane-2 over 8 mm; min_wall is 40 µm (30,
+        6 mm)
         → move lane-1 0.009 mm away from lane-2
       2 caution open-end: the end of stub meets no port and no channel (38, 3 mm)
         → carry it on to a port, or name it in ignore

@@ -1,10 +1,15 @@
 import { cleanText } from '../plain-text.ts';
 import { formatNumber, type Show } from '../quantity.ts';
 import { hasWindow, outsideWindows, windowTexts } from '../reach-values.ts';
-import type { Report, ReportedCase } from '../report.ts';
-import type { ReachRow } from '../result-schema.ts';
-import { SMALL } from './context.ts';
+import type { ReportedCase } from '../report.ts';
+import type { CountsRow, ReachRow } from '../result-schema.ts';
+import { verdictCounts } from '../verdict-line.ts';
+import { BODY, type PageContext, SMALL } from './context.ts';
+import { drawingText } from './document.ts';
+import { factsHeight, writeFacts } from './facts.ts';
+import { FACTS, inputFacts } from './front-page.ts';
 import type { Element, Paper } from './paper.ts';
+import { SIGN_HEIGHT, writeBanner, writeSignatures } from './sign-off.ts';
 import { cells, drawTable, type TableRow } from './table.ts';
 
 /** Cases beside each other in one table; more run on in tables below. */
@@ -13,13 +18,33 @@ const CASES_ABREAST = 4;
 const MOST_REACHES = 40;
 const MOST_PORTS = 40;
 
-/** The cases of one layout beside each other: verdict, fluid, ports, and what each channel with a window gets. Nothing for a single state. */
-export function writeCases(paper: Paper, report: Report): void {
+/**
+ * The cases of one layout beside each other: verdict, fluid, ports, and what each channel with a window gets; then what went in and
+ * the lines to sign, since the cases have one verdict. Nothing for a single state.
+ */
+export function writeCases(contexts: readonly PageContext[]): void {
+  if (contexts.length < 2) return;
+  const [{ paper, report, one }] = contexts;
   const { cases } = report;
-  if (cases.length < 2) return;
   paper.newPage('portrait');
   const section = paper.section();
   paper.heading(section, 1, 'Cases compared');
+  const { sheet } = one.network.chip;
+  const drawing = [sheet?.title ?? '', sheet === null ? '' : drawingText(sheet.drawing)];
+  paper.paragraph(
+    section,
+    [...drawing, `layout ${report.result.layout.file}`].filter(Boolean).join(', '),
+    BODY,
+  );
+  const total = (pick: (counts: CountsRow) => number): number =>
+    cases.reduce((sum, { part }) => sum + pick(part.counts), 0);
+  const counts = verdictCounts({
+    blockers: total(({ blockers }) => blockers),
+    cautions: total(({ cautions }) => cautions),
+    accepted: total(({ accepted }) => accepted),
+    rules_not_run: total(({ rules_not_run }) => rules_not_run),
+  });
+  writeBanner(paper, section, report.result.verdict, `all cases together: ${counts}`);
   paper.paragraph(
     section,
     `${cases.length} cases of one chip, each solved and judged on its own; the chip is ${report.result.verdict === 'ready' ? 'ready: no case has a blocker' : 'on hold: at least one case has a blocker'}.`,
@@ -27,7 +52,17 @@ export function writeCases(paper: Paper, report: Report): void {
   );
   for (let from = 0; from < cases.length; from += CASES_ABREAST)
     writeTable(paper, section, cases.slice(from, from + CASES_ABREAST));
+  const facts = inputFacts(contexts[0]).filter(([key]) => !OF_EACH_CASE.has(key));
+  const height = factsHeight(paper, facts, { ...FACTS, width: paper.width }) + SIGN_HEIGHT + 24;
+  if (paper.y + height > paper.bottom) paper.newPage();
+  paper.y = Math.max(paper.y, paper.bottom - height);
+  paper.heading(section, 3, 'What went in');
+  writeFacts(paper, section, facts, FACTS);
+  writeSignatures(paper, section);
 }
+
+/** What a case may change is on its own page. */
+const OF_EACH_CASE: ReadonlySet<string> = new Set(['fluid', 'depth', 'joints']);
 
 function writeTable(paper: Paper, section: Element, cases: readonly ReportedCase[]): void {
   const { rows, more } = rowsOf(cases);
@@ -58,6 +93,7 @@ function rowsOf(cases: readonly ReportedCase[]): {
       ({ part: { counts } }) => `${counts.blockers}, ${counts.cautions}, ${counts.notes}`,
     ),
     row('accepted', ({ part }) => String(part.counts.accepted)),
+    row('rules not run', ({ part }) => String(part.counts.rules_not_run)),
     row('rules of blockers', ({ part }) => blockersText(part.findings)),
     { kind: 'group', text: 'Fluid' },
     row('fluid', ({ part }) => part.fluid.name),

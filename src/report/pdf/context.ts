@@ -1,3 +1,4 @@
+import type { ChipLayer } from '../../chip/types.ts';
 import { type ChipGeometry, chipGeometry } from '../map-geometry.ts';
 import type { Report, ReportedCase } from '../report.ts';
 import { type Paper, POINTS_PER_MM } from './paper.ts';
@@ -8,7 +9,7 @@ export interface PageContext {
   readonly report: Report;
   readonly one: ReportedCase;
   readonly geometry: ChipGeometry;
-  /** Printed on page 1. */
+  /** Printed on the first pages. */
   readonly date: Date;
   /** For maps: width in mm of a text in the bolder weight, which is the wider. */
   readonly measure: (text: string, sizeMm: number) => number;
@@ -37,4 +38,9 @@ export const SMALL = { size: 6.5, colour: '#444444' } as const;
 /** ISO date, UTC. */
 export function isoDate(date: Date): string {
   return date.toISOString().slice(0, 10);
+}
+
+/** Where a layer's depth comes from, in words: its own entry, the run sheet's depth for all layers, or the drawing. */
+export function depthFrom({ depthOrigin }: Pick<ChipLayer, 'depthOrigin'>): string {
+  return depthOrigin === 'default' ? 'run sheet, for all layers' : depthOrigin;
 }

@@ -35,7 +35,7 @@ export function writePdf(report: Report, options: PdfOptions): Promise<Uint8Arra
   const title = sheet?.title ?? result.layout.file;
   const paper = new Paper({ ...options, title, subject: `Check of ${result.layout.file}`, creator });
   const contexts = cases.map((one) => pageContext(paper, report, one, options.date));
-  writeCases(paper, report);
+  writeCases(contexts);
   for (const context of contexts) {
     writeFrontPage(context);
     writePump(context);

@@ -1,10 +1,10 @@
 import type { Chip } from '../../chip/types.ts';
-import { drawMap } from '../map.ts';
+import { drawMap, mapNotes } from '../map.ts';
 import { cleanText } from '../plain-text.ts';
 import {
+  formatBound,
   formatMm,
   formatNumber,
-  formatShare,
   largestMagnitude,
   type Show,
   type Shown,
@@ -13,14 +13,13 @@ import {
 import { hasWindow, outsideWindows, reachesThatMatter, windowTexts } from '../reach-values.ts';
 import type { PortRow, ReachRow } from '../result-schema.ts';
 import { plural, verdictCounts } from '../verdict-line.ts';
-import { BODY, BODY_BOLD, isoDate, type PageContext, SMALL } from './context.ts';
+import { BODY, depthFrom, isoDate, type PageContext, SMALL } from './context.ts';
 import { drawingText } from './document.ts';
 import { factsHeight, writeFacts } from './facts.ts';
 import { paintMap } from './paint-map.ts';
-import { type Element, lineHeight, POINTS_PER_MM } from './paper.ts';
+import { type Element, POINTS_PER_MM } from './paper.ts';
+import { SIGN_HEIGHT, writeBanner, writeSignatures } from './sign-off.ts';
 import { type Column, cells, drawTable, type TableRow } from './table.ts';
-
-const SIGN_HEIGHT = 40;
 
 /**
  * Page 1: verdict with all its counts and what was not checked, the chip coloured by pressure, ports, what went in, and lines to sign.
@@ -44,15 +43,15 @@ export function writeFrontPage(context: PageContext): void {
   paper.y = Math.max(paper.y, paper.bottom - below + 6);
   paper.heading(section, 3, 'What went in');
   writeFacts(paper, section, facts, FACTS);
-  writeSignatures(context, section);
+  // with cases there is one verdict, signed on page 1
+  if (context.report.cases.length === 1) writeSignatures(paper, section);
   if (here.length < ports.length) {
     paper.newPage('portrait');
     writePorts(context, section, 'Ports, continued', ports.slice(here.length), 0);
   }
 }
 
-const FACTS = { keyWidth: 62, size: 6.5 } as const;
-const VERDICT_COLOURS = { ready: '#14532d', hold: '#8f1414' } as const;
+export const FACTS = { keyWidth: 62, size: 6.5 } as const;
 
 function writeVerdict({ paper, report, one }: PageContext, section: Element): void {
   const { sheet } = one.network.chip;
@@ -72,25 +71,8 @@ function writeVerdict({ paper, report, one }: PageContext, section: Element): vo
     `layout ${report.result.layout.file}`,
   ].filter((text) => text !== '');
   paper.paragraph(section, drawing.join(', '), BODY);
-  const boxY = paper.y + 1;
-  const word = part.verdict.toUpperCase();
-  const wordStyle = { size: 15, weight: 'bold', colour: '#ffffff' } as const;
-  const wordWidth = paper.widthOf(word, wordStyle) + 16;
-  paper.decoration(() => {
-    paper.doc.rect(paper.left, boxY, wordWidth, 22).fill(VERDICT_COLOURS[part.verdict]);
-    paper.doc
-      .rect(paper.left, boxY, paper.width, 22)
-      .lineWidth(0.8)
-      .strokeColor(VERDICT_COLOURS[part.verdict])
-      .stroke();
-  });
-  paper.tagged(section, 'P', () => {
-    paper.put(word, paper.left + 8, boxY + 2.2, wordStyle);
-    const counts = { size: 9.5, weight: 'bold' } as const;
-    const text = `${verdictCounts(part.counts)}, ${plural(part.counts.notes, 'note')}`;
-    paper.put(text, paper.left + wordWidth + 8, boxY + 5.2, counts);
-  });
-  paper.y = boxY + 25;
+  const counts = `${verdictCounts(part.counts)}, ${plural(part.counts.notes, 'note')}`;
+  writeBanner(paper, section, part.verdict, counts);
   const listed =
     part.not_run.length === 0
       ? 'Every rule was run.'
@@ -124,7 +106,7 @@ function writePressureMap(
   paintMap(paper, section, drawing, paper.left, paper.y, alt);
   paper.y += drawing.heightMm * POINTS_PER_MM;
   const numbers = drawing.markers.length === 0 ? '' : ' Numbers are those of the findings.';
-  paper.paragraph(section, `${drawing.caption}${numbers}`, SMALL);
+  paper.paragraph(section, `${mapNotes(drawing)}${numbers}`, SMALL);
 }
 
 function writePorts(
@@ -200,7 +182,7 @@ export function portsTable(
       number(port.supply_pressure_pa, pressure.si),
       number(port.flow_m3_s, flow.si),
       ...(withTubing ? [number(port.tubing_volume_m3, volume.si), number(port.tubing_time_s, time.si)] : []),
-      ...(withJoints ? [formatShare(port.joint_flow_share)] : []),
+      ...(withJoints ? [formatBound(port.joint_flow_share)] : []),
     ),
   );
   return { columns, rows };
@@ -263,7 +245,7 @@ function writeReachesThatMatter({ paper, one }: PageContext, section: Element, r
   }
 }
 
-function inputFacts({ report, one, date }: PageContext): readonly (readonly [string, string])[] {
+export function inputFacts({ report, one, date }: PageContext): readonly (readonly [string, string])[] {
   const { chip } = one.network;
   const { layout, run_sheet, tool } = report.result;
   return [
@@ -296,10 +278,11 @@ function fluidText({ fluid }: Chip): string {
 const LAYERS_LISTED = 8;
 
 function depthText({ layers }: Chip): string {
-  const listed = layers.slice(0, LAYERS_LISTED).map(({ name, depthM, depthOrigin, profile }) => {
+  const listed = layers.slice(0, LAYERS_LISTED).map((layer) => {
+    const { name, depthM, profile } = layer;
     const depth = Number.isNaN(depthM)
       ? 'depth unknown'
-      : `${formatNumber(depthM * 1e6)} µm (${depthOrigin})`;
+      : `${formatNumber(depthM * 1e6)} µm (${depthFrom(layer)})`;
     return `${name === '' ? 'strokes in no layer' : name} ${depth}${profile === 'isotropic' ? ', isotropic profile' : ''}`;
   });
   const more = layers.length - listed.length;
@@ -323,17 +306,4 @@ function ignoredText({ ignored }: Chip): string {
   return kinds.length === 0
     ? 'nothing: all that is drawn was read'
     : kinds.map(([kind, count]) => `${count} ${kind}`).join(', ');
-}
-
-function writeSignatures({ paper }: PageContext, section: Element): void {
-  const y = Math.max(paper.y + 20, paper.bottom - 14);
-  const labels = ['checked', 'approved', 'date'];
-  const gap = 18;
-  const width = (paper.width - gap * (labels.length - 1)) / labels.length;
-  labels.forEach((label, i) => {
-    const x = paper.left + i * (width + gap);
-    paper.rule(y, x, x + width, '#222222', 0.5);
-    paper.tagged(section, 'P', () => paper.put(label, x, y + 2, BODY_BOLD));
-  });
-  paper.y = y + 2 + lineHeight(BODY);
 }

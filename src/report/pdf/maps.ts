@@ -1,4 +1,4 @@
-import { drawMap, QUANTITY_TITLES } from '../map.ts';
+import { drawMap, mapNotes, QUANTITY_TITLES } from '../map.ts';
 import { type PageContext, SMALL } from './context.ts';
 import { paintMap } from './paint-map.ts';
 import { POINTS_PER_MM } from './paper.ts';
@@ -36,11 +36,7 @@ export function writeMaps({ paper, one, geometry, measure, readable }: PageConte
       `The chip as drawn, coloured by ${title}; the numbers are in the table of reaches.`,
     );
     paper.y += height;
-    const left =
-      drawing.unlabelled === 0
-        ? ''
-        : ` ${drawing.unlabelled} ${drawing.unlabelled === 1 ? 'reach' : 'reaches'} without a label: no room.`;
-    paper.paragraph(section, `${drawing.caption}${left}`, SMALL);
+    paper.paragraph(section, mapNotes(drawing), SMALL);
     paper.y += 3;
   }
 }

@@ -1,7 +1,7 @@
 import type { Chip, Sourced } from '../../chip/types.ts';
-import { formatMm, formatNumber, formatShare } from '../quantity.ts';
+import { formatBound, formatMm, formatNumber } from '../quantity.ts';
 import type { ReportedCase } from '../report.ts';
-import { BODY, type PageContext } from './context.ts';
+import { BODY, depthFrom, type PageContext } from './context.ts';
 import type { Element, Paper } from './paper.ts';
 import { cells, drawTable, type TableRow } from './table.ts';
 
@@ -146,7 +146,7 @@ function writeCentrelineFlows(
         name,
         show.text('flow', flow_m3_s),
         Number.isFinite(flows[i]) ? show.text('flow', flows[i]) : '–',
-        formatShare(joint_flow_share),
+        formatBound(joint_flow_share),
       ),
     ),
   );
@@ -170,13 +170,13 @@ function writeLayers(paper: Paper, section: Element, chip: Chip): void {
     ],
     chip.layers
       .slice(0, LAYER_BOUND)
-      .map(({ name, plane, depthM, depthOrigin, profile }) =>
+      .map((layer) =>
         cells(
-          name === '' ? '(none)' : name,
-          chip.planes[plane] ?? '',
-          Number.isNaN(depthM) ? '–' : formatNumber(depthM * 1e6),
-          depthOrigin,
-          profile,
+          layer.name === '' ? '(none)' : layer.name,
+          chip.planes[layer.plane] ?? '',
+          Number.isNaN(layer.depthM) ? '–' : formatNumber(layer.depthM * 1e6),
+          Number.isNaN(layer.depthM) ? '–' : depthFrom(layer),
+          layer.profile,
         ),
       ),
   );

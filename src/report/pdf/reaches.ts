@@ -41,8 +41,9 @@ export function writeReaches({ paper, one }: PageContext): void {
 }
 
 const LEGEND =
-  'Flow and pressure drop are positive from → to, in drawn direction. Drawn: centreline outside wells; off: what joining rules and joints took off (−) or added; ' +
-  'duct: the length that resists flow. Shear of the walls along the flow: floor (and lid) and sides, mean over the wall and peak in its middle. ' +
+  'Flow and pressure drop are positive from → to, in drawn direction. Drawn: centreline outside wells; trim: taken off (−) where it lies in the strip of another; ' +
+  'joints: what corners, bends and junctions take off (−) or add; ' +
+  'duct: the sum, which resists flow. Shear of the walls along the flow: floor (and lid) and sides, mean over the wall and peak in its middle. ' +
   'Time: mean is volume over flow, fastest is on the axis. ✗ and bold: outside a window, see findings. –: does not exist. All columns in SI units, and more of them, are in the CSV file.';
 
 interface NumberColumn {
@@ -89,7 +90,13 @@ function numberColumns(rows: readonly ReachRow[], show: Show): readonly NumberCo
   const windows = rows.some((row) => row.floor_share_inside_window !== null);
   return [
     column('drawn', 'length', (row) => row.drawn_length_m, length),
-    column('off', 'length', (row) => rounded(row.length_m - row.drawn_length_m), length),
+    column(
+      'trim',
+      'length',
+      (row) => rounded(row.length_m - row.joint_length_m - row.drawn_length_m),
+      length,
+    ),
+    column('joints', 'length', (row) => rounded(row.joint_length_m), length),
     column('duct', 'length', (row) => row.length_m, length),
     column('width', 'cross_length', (row) => row.width_m),
     column('depth', 'cross_length', (row) => row.depth_m),
@@ -117,9 +124,9 @@ function numberColumns(rows: readonly ReachRow[], show: Show): readonly NumberCo
   ];
 }
 
-/** Differences of lengths to a nanometre: below are the last bits of the two. */
+/** Differences of lengths to 0.1 µm, finer than any process: below are nanometres and the last bits of the two. */
 function rounded(differenceM: number): number {
-  return Math.round(differenceM * 1e9) / 1e9;
+  return Math.round(differenceM * 1e7) / 1e7;
 }
 
 function tableColumns(numbers: readonly NumberColumn[]): readonly Column[] {

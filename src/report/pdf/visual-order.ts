@@ -9,7 +9,7 @@ const RIGHT_TO_LEFT = String.raw`\p{Script=Hebrew}\p{Script=Arabic}\p{Script=Syr
 const LETTER = new RegExp(`[${RIGHT_TO_LEFT}]`, 'u');
 /** Right-to-left letters with their marks; a number; a left-to-right word; any other single character. */
 const CHUNK = new RegExp(
-  String.raw`[${RIGHT_TO_LEFT}][${RIGHT_TO_LEFT}\p{M}]*|\p{Nd}+(?:[.,:]\p{Nd}+)*|(?:(?![${RIGHT_TO_LEFT}])[\p{L}\p{M}])+|[^]`,
+  String.raw`[${RIGHT_TO_LEFT}][${RIGHT_TO_LEFT}\p{M}]*|\p{Nd}+(?:[.,:]\p{Nd}+)*|(?:(?![${RIGHT_TO_LEFT}])[\p{L}\p{M}])+|[\s\S]`,
   'gu',
 );
 const MIRRORED: Readonly<Record<string, string>> = {

@@ -1,0 +1,88 @@
+import { pieceAt } from '../geometry/pieces.ts';
+import {
+  addShapeStretches,
+  addStripStretches,
+  type PieceShape,
+  roundAtEnd,
+  roundAtStart,
+  type StripEnds,
+} from '../geometry/strip.ts';
+import { type Draft, pointAt } from './draft.ts';
+import type { Kept } from './overshoot.ts';
+
+/**
+ * The strips of the centrelines as they were joined: carried on in their own direction (rule 3) or cut back (rule 4), and
+ * ended square there; one carried on aside, to the nearest point, is etched as drawn. So a wide or deep branch takes the
+ * same piece of the channel that it meets, to whichever side of that channel's centreline it was drawn.
+ */
+export class KeptStrips {
+  private readonly draft: Draft;
+  private readonly kept: Kept;
+  private readonly ends: StripEnds;
+
+  constructor(draft: Draft, kept: Kept, ends: StripEnds) {
+    this.draft = draft;
+    this.kept = kept;
+    this.ends = ends;
+  }
+
+  /** Adds the stretches of a→b that lie in the strip of one piece. */
+  addStretches(into: number[], piece: number, ax: number, ay: number, bx: number, by: number): void {
+    const { pieces, slackMm } = this.draft;
+    const c = pieces.centreline[piece];
+    const from = this.kept.from[c];
+    const to = this.kept.to[c];
+    const start = pieces.start[piece];
+    const end = start + pieces.length[piece];
+    const isFirst = piece === pieces.firstPiece[c];
+    const isLast = piece === pieces.firstPiece[c + 1] - 1;
+    const growsAtStart = isFirst && from < 0 && this.isStraightOn(2 * c);
+    const growsAtEnd = isLast && to > end && this.isStraightOn(2 * c + 1);
+    const startMoves = from > start || growsAtStart;
+    const endMoves = to < end || growsAtEnd;
+    if (pieces.centrelineClosed[c] === 1 || !(startMoves || endMoves)) {
+      addStripStretches(into, pieces, piece, ax, ay, bx, by, slackMm, this.ends);
+      return;
+    }
+    if (to <= start || from >= end) return;
+    const low = startMoves ? from : start;
+    const high = endMoves ? to : end;
+    const { seam } = this.ends;
+    this.addShape(into, c, low, high, ax, ay, bx, by, {
+      startIsRound: startMoves ? seam[2 * c] === 1 : roundAtStart(pieces, piece, this.ends),
+      endIsRound: endMoves ? seam[2 * c + 1] === 1 : roundAtEnd(pieces, piece, this.ends),
+    });
+  }
+
+  /** Whether an end was carried on in its own direction. */
+  private isStraightOn(end: number): boolean {
+    const { ends } = this.draft;
+    const along =
+      (ends.tipX[end] - ends.x[end]) * ends.outX[end] + (ends.tipY[end] - ends.y[end]) * ends.outY[end];
+    return along > ends.extension[end] * (1 - 1e-9);
+  }
+
+  /** The straight piece of a centreline between two positions. */
+  private addShape(
+    into: number[],
+    c: number,
+    from: number,
+    to: number,
+    ax: number,
+    ay: number,
+    bx: number,
+    by: number,
+    round: Pick<PieceShape, 'startIsRound' | 'endIsRound'>,
+  ): void {
+    const { draft } = this;
+    const p = { x: 0, y: 0 };
+    const q = { x: 0, y: 0 };
+    pointAt(draft, c, from, p);
+    pointAt(draft, c, to, q);
+    const length = Math.hypot(q.x - p.x, q.y - p.y);
+    if (length === 0) return;
+    const half = draft.pieces.half[pieceAt(draft.pieces, c, Math.max(0, from))];
+    const shape: PieceShape = { px: p.x, py: p.y, qx: q.x, qy: q.y, length, half, ...round };
+    addShapeStretches(into, shape, ax, ay, bx, by, draft.slackMm);
+  }
+}
