@@ -415,9 +415,14 @@ function tidy(points: number[], radii: readonly number[], how: 'open' | 'closed'
       kept.push(x, y);
       keptRadii.push(radii[i - 1]);
     } else if (isEnd && kept.length > 2) {
-      // The true end stays; the point before gives way.
-      kept[kept.length - 2] = x;
-      kept[kept.length - 1] = y;
+      // The true end stays; the point before gives way, and so does one that then coincides with the end.
+      let radius = 0;
+      do {
+        kept.length -= 2;
+        radius = keptRadii.pop() ?? 0;
+      } while (kept.length > 2 && length(x - kept[kept.length - 2], y - kept[kept.length - 1]) <= same);
+      kept.push(x, y);
+      keptRadii.push(radius);
     }
   }
   if (kept.length < 4) return null;

@@ -72,8 +72,7 @@ export function findTrims(
       triedStamp[group] = arm;
       const factor = trimFactor(draft, c, group);
       if (factor >= 1) return;
-      const length = reachInStrip(draft, c, position, direction, neighbours, group, keptStrips);
-      if (length > 0) addTrim(c, position, direction, length, factor, resolved(node, factor));
+      trimAlong(c, position, direction, group, factor, resolved(node, factor));
     };
     if (end - begin <= FEW_MEMBERS) {
       for (let m = begin; m < end; m++) tryStrip(strips.group[stops.centreline[byNode.stop[m]]]);
@@ -90,6 +89,32 @@ export function findTrims(
         const other = near.pairA[pair] === piece ? near.pairB[pair] : near.pairA[pair];
         tryStrip(strips.group[pieces.centreline[other]]);
       }
+    }
+  }
+
+  /** Trims from a position on until the strip is left; where the stroke ends at a seam the walk goes on in its other half. */
+  function trimAlong(
+    c: number,
+    position: number,
+    direction: 1 | -1,
+    group: number,
+    factorByRule: number,
+    factorResolved: number,
+  ): void {
+    let line = c;
+    let from = position;
+    let way = direction;
+    for (;;) {
+      const length = reachInStrip(draft, line, from, way, neighbours, group, keptStrips);
+      if (length > 0) addTrim(line, from, way, length, factorByRule, factorResolved);
+      if (pieces.centrelineClosed[line] === 1) return;
+      const end = way === 1 ? kept.to[line] : kept.from[line];
+      const next = strips.seamWith[2 * line + (way === 1 ? 1 : 0)];
+      if (next < 0 || Math.abs(from + way * length - end) > draft.slackMm || length <= 0) return;
+      line = next >> 1;
+      if (line === c) return;
+      way = (next & 1) === 0 ? 1 : -1;
+      from = way === 1 ? kept.from[line] : kept.to[line];
     }
   }
 
@@ -170,6 +195,8 @@ interface UnitedStrips {
   /** A centreline that stands for all centrelines of one strip. */
   readonly group: Int32Array;
   readonly ends: StripEnds;
+  /** For each end (2c, 2c + 1) the end that it makes a seam with, −1 for none or several. */
+  readonly seamWith: Int32Array;
 }
 
 /** Strips of equal width and depth that meet end to end are one strip, and the seam between them is an inner vertex. */
@@ -181,6 +208,7 @@ function uniteEqualStrips(draft: Draft, stops: Stops, kept: Kept, byNode: NodeSt
     group[c] = c > 0 && pieces.centrelineChannel[c] === pieces.centrelineChannel[c - 1] ? group[c - 1] : c;
   }
   const seam = new Uint8Array(2 * pieces.centrelineCount);
+  const seamWith = new Int32Array(2 * pieces.centrelineCount).fill(-1);
   const find = (c: number): number => {
     while (group[c] !== c) {
       group[c] = group[group[c]];
@@ -203,6 +231,11 @@ function uniteEqualStrips(draft: Draft, stops: Stops, kept: Kept, byNode: NodeSt
         heads.set(key, e);
         continue;
       }
+      // Of three equal ends none goes on in just one other.
+      const isThird = seam[head] === 1;
+      seamWith[e] = isThird ? -1 : head;
+      if (isThird && seamWith[head] >= 0) seamWith[seamWith[head]] = -1;
+      seamWith[head] = isThird ? -1 : e;
       seam[head] = 1;
       seam[e] = 1;
       const a = find(head >> 1);
@@ -212,7 +245,7 @@ function uniteEqualStrips(draft: Draft, stops: Stops, kept: Kept, byNode: NodeSt
     }
   }
   for (let c = 0; c < pieces.centrelineCount; c++) group[c] = find(c);
-  return { group, ends: { seam } };
+  return { group, ends: { seam }, seamWith };
 }
 
 function countEnds(

@@ -80,7 +80,7 @@ export const nodeSchema = v.strictObject({
 export const reachSchema = v.strictObject({
   name: text,
   channel: text,
-  layer: text,
+  layer: v.pipe(v.nullable(text), v.description('null for a stroke in no layer')),
   from: v.pipe(text, v.description('Node at the start, in drawn direction')),
   to: v.pipe(text, v.description('Node at the end, in drawn direction')),
   width_m: maybe('Width of the rectangular duct'),

@@ -204,7 +204,7 @@ function reachRow(network: Network, flow: FlowState, reach: number, sectionOf: S
   return {
     name: network.reachName(reach),
     channel: channel.name,
-    layer: chip.layers[channel.layer].name,
+    layer: chip.layers[channel.layer].name || null,
     from: network.nodeName(network.reachFrom[reach]),
     to: network.nodeName(network.reachTo[reach]),
     width_m: known(channel.ductWidthMm / 1000),

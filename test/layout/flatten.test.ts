@@ -171,6 +171,11 @@ describe('subpaths', () => {
     expect([...points.slice(-2)]).toEqual([0.1, 0]);
   });
 
+  it('one that goes back over itself and closes with less than rounding has no piece without length', () => {
+    const { points } = only('M0 0H35H0V1e-9z');
+    expect([...points]).toEqual([0, 0, 35, 0, 0, 0]);
+  });
+
   it('has one radius for each piece', () => {
     for (const d of ['M0 0H1V1z', 'M0 0a1 1 0 0 1 2 0h0h3z', 'M0 0C1 1 2 1 3 0']) {
       const { points, bendRadius } = only(d);

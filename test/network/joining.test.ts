@@ -167,6 +167,24 @@ describe('rules 3 to 5: branches, overshoot and trimming', () => {
     expect(two.reaches.feeder.duct).toBeCloseTo(one.reaches.feeder.duct, 12);
   });
 
+  it('trims a channel through a wider or deeper one the same when it is drawn in two strokes that meet inside it', () => {
+    const main: ChannelSpec = { name: 'main', widthMm: 0.4, depthMm: 0.1, lines: [[0, 0, 10, 0]] };
+    const shallow = { widthMm: 0.4, depthMm: 0.05 };
+    const one = describeNetwork([main, { name: 'b', ...shallow, lines: [[5, -4, 5, 4]] }]);
+    const two = describeNetwork([
+      main,
+      { name: 'b', ...shallow, lines: [[5, -4, 5, 0.1]] },
+      { name: 'c', ...shallow, lines: [[5, 0.1, 5, 4]] },
+    ]);
+    const sum = (reaches: Record<string, { duct: number }>): number =>
+      Object.entries(reaches).reduce(
+        (total, [name, { duct }]) => total + (name.startsWith('main') ? 0 : duct),
+        0,
+      );
+    expect(sum(two.reaches)).toBeCloseTo(sum(one.reaches), 12);
+    expect(sum(one.reaches)).toBeCloseTo(2 * (3.8 + 0.2 / 8), 12);
+  });
+
   it("trims a ladder's end lane like its brothers", () => {
     const { reaches } = describeNetwork([
       { name: 'top', widthMm: 0.6, lines: [[0, 0, 10, 0]] },
