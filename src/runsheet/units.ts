@@ -5,7 +5,7 @@
  * value it rounds (mmHg, torr, psi) or lacks (inH2O, cP, thou) are defined here from exact factors:
  * g = 9.80665 m/s², lb = 0.45359237 kg, in = 0.0254 m, atm = 101325 Pa (NIST SP 811, appendix B.8).
  */
-import { create, type Unit as MathUnit, type UnitCtor, UnitDependencies } from 'mathjs';
+import { type Unit as MathUnit, type UnitCtor, UnitDependencies } from 'mathjs';
 import { nearest } from './nearest.ts';
 import { quote } from './quote.ts';
 
@@ -155,11 +155,35 @@ interface Scale {
 
 const RATIO = 'ratio';
 
-const Unit = unitClass();
-
+/**
+ * mathjs' own Unit, made by its own factory from plain arithmetic of numbers: `create` would first build its typed functions
+ * for complex numbers, fractions and matrices, which takes 0.1 s and is never asked for here.
+ */
 function unitClass(): UnitCtor {
-  // mathjs declares Unit without its static functions; createUnit is documented and there in mathjs 15 (Unit.js).
-  const ctor = create({ UnitDependencies }).Unit as UnitCtor & {
+  // mathjs declares its dependency maps as opaque, and Unit without its static functions; both are there in mathjs 15
+  // (factoriesAny.js, Unit.js), and the tests of every spelling would fail without them.
+  const { createUnitClass } = UnitDependencies as unknown as {
+    readonly createUnitClass: (parts: Readonly<Record<string, unknown>>) => unknown;
+  };
+  const ctor = createUnitClass({
+    config: { number: 'number', predictable: false },
+    addScalar: (a: number, b: number) => a + b,
+    subtractScalar: (a: number, b: number) => a - b,
+    multiplyScalar: (a: number, b: number) => a * b,
+    divideScalar: (a: number, b: number) => a / b,
+    pow: (a: number, b: number) => a ** b,
+    abs: Math.abs,
+    fix: Math.trunc,
+    round: Math.round,
+    equal: (a: number, b: number) => a === b,
+    isNumeric: (value: unknown) => typeof value === 'number',
+    format: String,
+    number: Number,
+    // Only degrees Fahrenheit are made of a fraction (5/9); no unit here is made of the other two.
+    Fraction: PlainFraction,
+    Complex: class {},
+    BigNumber: class {},
+  }) as UnitCtor & {
     createUnit(
       definitions: Readonly<Record<string, string>>,
       options: { readonly override: boolean },
@@ -179,6 +203,21 @@ function unitClass(): UnitCtor {
   );
   return ctor;
 }
+
+/** What mathjs asks of a fraction: that it can be used as a number. */
+class PlainFraction {
+  private readonly value: number;
+
+  constructor(numerator: number, denominator: number) {
+    this.value = numerator / denominator;
+  }
+
+  valueOf(): number {
+    return this.value;
+  }
+}
+
+const Unit = unitClass();
 
 const PRESSURES = [
   ...['Pa', 'hPa', 'kPa', 'MPa', 'bar', 'mbar', 'psi', 'mmHg', 'torr'],
