@@ -25,6 +25,9 @@ const SIZES: Record<PaperSize, readonly [number, number]> = { a4: [595.28, 841.8
 export const POINTS_PER_MM = 72 / 25.4;
 const MARGIN = 42;
 const INK = '#111111';
+/** Size at which widths are measured; a font's units are a thousandth or so of it. */
+const UNIT_SIZE = 100;
+const MOST_KNOWN_WIDTHS = 50_000;
 
 /**
  * Sheets of paper with one embedded font in two weights, written from the top down. Everything drawn is either tagged with its
@@ -38,6 +41,9 @@ export class Paper {
   private readonly has: Record<Weight, (codePoint: number) => boolean>;
   private readonly root: Element;
   private readonly chunks: Uint8Array[] = [];
+  /** Widths of texts at size 1, by weight. */
+  private readonly plainWidths = new Map<string, number>();
+  private readonly boldWidths = new Map<string, number>();
   private orientation: 'portrait' | 'landscape' = 'portrait';
 
   constructor(options: {
@@ -197,9 +203,10 @@ export class Paper {
     this.use(style);
     this.doc.fillColor(style.colour ?? INK);
     let at = x;
-    for (const chunk of visualChunks(text)) {
+    const chunks = visualChunks(text);
+    for (const chunk of chunks) {
       this.doc.text(chunk, at, y, { lineBreak: false });
-      at += this.doc.widthOfString(chunk);
+      if (chunks.length > 1) at += this.doc.widthOfString(chunk);
     }
   }
 
@@ -209,8 +216,15 @@ export class Paper {
 
   /** Width of readable text. */
   widthOf(text: string, style: TextStyle): number {
-    this.use(style);
-    return visualChunks(text).reduce((sum, chunk) => sum + this.doc.widthOfString(chunk), 0);
+    // Tables ask for the same few texts again and again; a width is proportional to its size.
+    const known = style.weight === 'bold' ? this.boldWidths : this.plainWidths;
+    let width = known.get(text);
+    if (width === undefined) {
+      this.use({ ...style, size: UNIT_SIZE });
+      width = visualChunks(text).reduce((sum, chunk) => sum + this.doc.widthOfString(chunk), 0) / UNIT_SIZE;
+      if (known.size < MOST_KNOWN_WIDTHS) known.set(text, width);
+    }
+    return width * style.size;
   }
 
   /**
