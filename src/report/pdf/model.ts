@@ -105,12 +105,12 @@ function writeJoints(paper: Paper, section: Element, one: ReportedCase): void {
       { head: 'y', unit: 'mm', align: 'right', width: 'fit' },
     ],
     network.joints.map(({ kind, count, addedMm, boundMm, xMm, yMm }) =>
-      cells(kind, String(count), formatNumber(addedMm), formatNumber(boundMm), formatMm(xMm), formatMm(yMm)),
+      cells(kind, String(count), lengthText(addedMm), lengthText(boundMm), formatMm(xMm), formatMm(yMm)),
     ),
   );
   const sum = (lengths: Float64Array): number => lengths.reduce((total, length) => total + length, 0);
-  const centreline = formatNumber(sum(network.reachCentrelineMm));
-  const counted = formatNumber(sum(network.reachDuctMm));
+  const centreline = lengthText(sum(network.reachCentrelineMm));
+  const counted = lengthText(sum(network.reachDuctMm));
   paper.paragraph(
     section,
     network.chip.joints === 'resolved'
@@ -119,6 +119,11 @@ function writeJoints(paper: Paper, section: Element, one: ReportedCase): void {
     BODY,
   );
   writeCentrelineFlows(paper, section, one);
+}
+
+/** Without a depth there may be no length either. */
+function lengthText(mm: number): string {
+  return Number.isNaN(mm) ? '–' : formatNumber(mm);
 }
 
 const PORT_BOUND = 60;
