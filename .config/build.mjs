@@ -40,7 +40,10 @@ writeFileSync(join(dist, 'run-sheet.schema.json'), `${JSON.stringify(runSheetJso
 writeFileSync(join(dist, 'result.schema.json'), `${JSON.stringify(resultJsonSchema(), null, 2)}\n`);
 rmSync(join(dist, 'schemas.js'));
 writeLicences(metafile);
-execFileSync(process.execPath, [typescript(), '--project', join(root, '.config/tsconfig.types.json')], { cwd: root, stdio: 'inherit' });
+execFileSync(process.execPath, [typescript(), '--project', join(root, '.config/tsconfig.types.json')], {
+  cwd: root,
+  stdio: 'inherit',
+});
 
 function typescript() {
   const require = createRequire(import.meta.url);
@@ -66,7 +69,17 @@ function writeLicences({ inputs }) {
 }
 
 function licenceText(folder) {
-  for (const name of ['LICENSE', 'LICENSE.md', 'LICENSE.txt', 'LICENCE', 'LICENCE.md', 'license', 'License.txt', 'LICENSE-MIT', 'LICENSE.mit']) {
+  for (const name of [
+    'LICENSE',
+    'LICENSE.md',
+    'LICENSE.txt',
+    'LICENCE',
+    'LICENCE.md',
+    'license',
+    'License.txt',
+    'LICENSE-MIT',
+    'LICENSE.mit',
+  ]) {
     try {
       return readFileSync(join(folder, name), 'utf8').trim();
     } catch (error) {

@@ -7,8 +7,18 @@ import { fileURLToPath } from 'node:url';
 
 const root = join(dirname(fileURLToPath(import.meta.url)), '..');
 const env = { SOURCE_DATE_EPOCH: '1767225600', ...process.env };
-for (const file of readdirSync(join(root, 'layouts-demo')).filter((name) => name.endsWith('.svg')).sort()) {
-  const args = ['dist/bin.js', 'check', `layouts-demo/${file}`, '--out', 'reports/demo', '--formats', 'pdf,svg,csv,json'];
+for (const file of readdirSync(join(root, 'layouts-demo'))
+  .filter((name) => name.endsWith('.svg'))
+  .sort()) {
+  const args = [
+    'dist/bin.js',
+    'check',
+    `layouts-demo/${file}`,
+    '--out',
+    'reports/demo',
+    '--formats',
+    'pdf,svg,csv,json',
+  ];
   console.log(`$ rillcheck ${args.slice(1).join(' ')}`);
   const { status } = spawnSync(process.execPath, args, { cwd: root, env, stdio: 'inherit' });
   // 0 is ready and 1 is hold: both are verdicts. Anything else means that the demo is broken.
