@@ -2,6 +2,7 @@
 import { execFileSync, type SpawnSyncReturns, spawn, spawnSync } from 'node:child_process';
 import {
   chmodSync,
+  cpSync,
   existsSync,
   mkdirSync,
   mkdtempSync,
@@ -16,7 +17,11 @@ import { join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { runOn } from '../hostile/run-on.ts';
 
-const BIN = join(import.meta.dirname, '../../dist/bin.js');
+const DIST = join(import.meta.dirname, '../../dist');
+
+/** The bundle is copied, so that a build during the tests does not pull it away. */
+const COPY = existsSync(join(DIST, 'bin.js')) ? mkdtempSync(join(tmpdir(), 'rillcheck-dist-')) : null;
+const BIN = join(COPY ?? DIST, 'bin.js');
 const isRoot = process.getuid?.() === 0;
 const NOBODY = 65534;
 
@@ -25,10 +30,13 @@ const CHIP = `<svg xmlns="http://www.w3.org/2000/svg" width="100mm" height="50mm
 const SHEET = 'depth: 50 um\nports:\n  in: { pressure: 10 kPa }\n  out: open\n';
 const ALL = ['check', 'chip.svg', '-f', 'pdf,svg,csv,json'];
 
-describe.skipIf(!existsSync(BIN))('the program as a process (skipped without dist/)', () => {
+describe.skipIf(COPY === null)('the program as a process (skipped without dist/)', () => {
   let folder: string;
   beforeAll(() => {
     folder = mkdtempSync(join(tmpdir(), 'rillcheck-faults-'));
+    cpSync(DIST, COPY!, { recursive: true });
+    chmodSync(COPY!, 0o755);
+    writeFileSync(join(COPY!, 'package.json'), '{ "type": "module" }');
     chmodSync(folder, 0o777);
     writeFileSync(join(folder, 'chip.svg'), CHIP);
     writeFileSync(join(folder, 'chip.run.yaml'), SHEET);
@@ -36,7 +44,10 @@ describe.skipIf(!existsSync(BIN))('the program as a process (skipped without dis
     writeFileSync(join(folder, 'large.svg'), svg);
     writeFileSync(join(folder, 'large.run.yaml'), sheet);
   });
-  afterAll(() => rmSync(folder, { recursive: true, force: true }));
+  afterAll(() => {
+    rmSync(folder, { recursive: true, force: true });
+    rmSync(COPY!, { recursive: true, force: true });
+  });
 
   const program = (
     argv: readonly string[],

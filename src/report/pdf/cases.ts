@@ -7,7 +7,7 @@ import { verdictCounts } from '../verdict-line.ts';
 import { BODY, type PageContext, SMALL } from './context.ts';
 import { drawingText } from './document.ts';
 import { factsHeight, writeFacts } from './facts.ts';
-import { FACTS, inputFacts } from './front-page.ts';
+import { FACTS, inputFacts, writePressureMap } from './front-page.ts';
 import type { Element, Paper } from './paper.ts';
 import { SIGN_HEIGHT, writeBanner, writeSignatures } from './sign-off.ts';
 import { cells, drawTable, type TableRow } from './table.ts';
@@ -55,10 +55,23 @@ export function writeCases(contexts: readonly PageContext[]): void {
   const facts = inputFacts(contexts[0]).filter(([key]) => !OF_EACH_CASE.has(key));
   const height = factsHeight(paper, facts, { ...FACTS, width: paper.width }) + SIGN_HEIGHT + 24;
   if (paper.y + height > paper.bottom) paper.newPage();
+  writePicture(contexts, section, height);
   paper.y = Math.max(paper.y, paper.bottom - height);
   paper.heading(section, 3, 'What went in');
   writeFacts(paper, section, facts, FACTS);
   writeSignatures(paper, section);
+}
+
+/** Less room than this above the inputs is left empty, points. */
+const PICTURE_ROOM = 240;
+
+/** The chip itself, in the first case that is on hold, else in the first; every case has such a picture on its own page. */
+function writePicture(contexts: readonly PageContext[], section: Element, below: number): void {
+  const context = contexts.find(({ one }) => one.part.verdict === 'hold') ?? contexts[0];
+  const { paper, one } = context;
+  if (paper.bottom - below - paper.y < PICTURE_ROOM) return;
+  paper.heading(section, 3, `The chip in case ${cleanText(one.name ?? '')}`);
+  writePressureMap(context, section, below);
 }
 
 /** What a case may change is on its own page. */

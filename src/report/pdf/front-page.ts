@@ -85,7 +85,8 @@ function writeVerdict({ paper, report, one }: PageContext, section: Element): vo
   paper.paragraph(section, shown, SMALL);
 }
 
-function writePressureMap(
+/** The chip coloured by pressure, between here and `below` points above the foot of the page. */
+export function writePressureMap(
   { paper, one, geometry, measure, readable }: PageContext,
   section: Element,
   below: number,
