@@ -135,7 +135,9 @@ function partInProportion(
   }
 
   function isProportional(halfS: number, halfT: number): boolean {
-    return distanceBetween(s, t) >= 1.5 * distanceBetween(halfS, halfT);
+    // Two centrelines still on each other have not parted at all: one drawn through the other's strip.
+    const apart = distanceBetween(s, t);
+    return apart > context.chip.joinWithinMm && apart >= 1.5 * distanceBetween(halfS, halfT);
   }
 
   function distanceBetween(onA: number, onB: number): number {
