@@ -129,7 +129,7 @@ function addRetraced(into: Along[], pieces: Pieces, i: number): void {
 
 /** The group as a double stroke; null when it is short, or nothing but two channels that cross or part. */
 function toDoubleStroke(
-  { chip }: FindingContext,
+  { chip, network }: FindingContext,
   pieces: Pieces,
   group: readonly Along[],
 ): DoubleStroke | null {
@@ -144,6 +144,7 @@ function toDoubleStroke(
     { s: along.to, apart: along.apartTo },
   ]);
   const meets = samples.filter(({ apart }) => apart <= SAME_PLACE_MM).map(({ s }) => s);
+  if (meets.length === 0) meets.push(...joinedEnds());
   if (meets.length > 0) {
     const first = Math.min(...extremes(meets));
     const last = Math.max(...extremes(meets));
@@ -170,6 +171,19 @@ function toDoubleStroke(
     xMm: x1 + share * (x2 - x1),
     yMm: y1 + share * (y2 - y1),
   };
+
+  /** Positions on a of ends of either stroke that were carried on to the other: they meet in a node there. */
+  function joinedEnds(): number[] {
+    const slack = chip.joinWithinMm;
+    const { endJoinedTo } = network.trace;
+    const isJoined = (c: number, other: number, position: number): boolean =>
+      (position <= slack && endJoinedTo[2 * c] === other) ||
+      (position >= pieces.centrelineLength[c] - slack && endJoinedTo[2 * c + 1] === other);
+    return group.flatMap((along) => [
+      ...(isJoined(a, b, along.from) || isJoined(b, a, along.otherFrom) ? [along.from] : []),
+      ...(isJoined(a, b, along.to) || isJoined(b, a, along.otherTo) ? [along.to] : []),
+    ]);
+  }
 
   /** Whether the stretch stops at s because one of the two strokes ends there, not because they part. */
   function endsThere(s: number): boolean {
