@@ -6,6 +6,7 @@ import type { Rule } from './findings/rule.ts';
 import { RULES } from './findings/rules.ts';
 import type { FindingReport } from './findings/types.ts';
 import type { Layout } from './layout/types.ts';
+import { isDrawnAlike } from './network/alike.ts';
 import { buildNetwork } from './network/build.ts';
 import type { Network } from './network/types.ts';
 import type { RunSheet } from './runsheet/types.ts';
@@ -33,6 +34,8 @@ export interface AnalysisInput {
   /** File name of the layout, for messages and the report. */
   readonly file: string;
   readonly layoutSha256: string;
+  /** Network of another case of the same layout: used again where this case draws and etches the chip alike. */
+  readonly alike?: Network;
 }
 
 /** Tells which stage is about to begin; a caller may show it, or throw to stop. */
@@ -46,8 +49,11 @@ export type OnStage = (stage: string) => Promise<void>;
 export async function analyse(input: AnalysisInput, onStage: OnStage = async () => {}): Promise<Analysis> {
   const chip = assembleChip(input);
   await onStage('joining channels');
-  const network = buildNetwork(chip);
-  return judge(network, RULES, onStage);
+  return judge(networkOf(chip, input.alike), RULES, onStage);
+}
+
+function networkOf(chip: Chip, alike: Network | undefined): Network {
+  return alike !== undefined && isDrawnAlike(alike.chip, chip) ? { ...alike, chip } : buildNetwork(chip);
 }
 
 /**
@@ -61,7 +67,7 @@ export async function analysePump(
 ): Promise<{ readonly analysis: Analysis; readonly settings: FoundSettings }> {
   const drawn = assembleChip(input);
   await onStage('joining channels');
-  const joined = buildNetwork(drawn);
+  const joined = networkOf(drawn, input.alike);
   await onStage('finding settings');
   const settings = findSettings(joined);
   const ports = drawn.ports.map((port, i) => ({ ...port, condition: settings.conditions[i] }));

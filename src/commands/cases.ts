@@ -1,6 +1,7 @@
 import type { Analysis } from '../analyse.ts';
 import { InputError } from '../errors.ts';
 import { settleAccepts } from '../findings/check.ts';
+import type { Network } from '../network/types.ts';
 import { buildCasesReport, buildReport, type Report } from '../report/report.ts';
 import type { ResultInput } from '../report/result.ts';
 import { nearest } from '../runsheet/nearest.ts';
@@ -32,6 +33,11 @@ export function casesOf(sheet: RunSheet | null, wanted: string | undefined): rea
     throw new InputError('--case', `there is no case ${quote(wanted)}; ${hint}`);
   }
   return cases.length === 0 ? [{ name: null, sheet }] : cases;
+}
+
+/** The network of the first case, offered to the ones that follow. */
+export function alikeTo(network: Network | undefined): { readonly alike?: Network } {
+  return network === undefined ? {} : { alike: network };
 }
 
 /** The report of analysed cases in their order; `extra` is what a command adds to the result of each. */

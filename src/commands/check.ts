@@ -3,7 +3,7 @@ import { layOut } from '../layout/layout.ts';
 import { terminalSummary } from '../report/terminal.ts';
 import { parseRunSheet } from '../runsheet/parse.ts';
 import { readSvg } from '../svg/read.ts';
-import { casesOf, toReport } from './cases.ts';
+import { alikeTo, casesOf, toReport } from './cases.ts';
 import { terminalOptions } from './colour.ts';
 import type { Io } from './io.ts';
 import { type CheckOptions, formatsOf } from './options.ts';
@@ -29,7 +29,13 @@ export async function check(layoutPath: string, options: CheckOptions, io: Io): 
       cases.push({
         name,
         analysis: await analyse(
-          { layout, sheet: caseSheet, file: layoutFile.name, layoutSha256: layoutFile.sha256 },
+          {
+            layout,
+            sheet: caseSheet,
+            file: layoutFile.name,
+            layoutSha256: layoutFile.sha256,
+            ...alikeTo(cases[0]?.analysis.network),
+          },
           (stage) => progress.stage(name === null ? stage : `${name}: ${stage}`),
         ),
       });

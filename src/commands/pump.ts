@@ -8,7 +8,7 @@ import { terminalSummary } from '../report/terminal.ts';
 import { parseRunSheet } from '../runsheet/parse.ts';
 import type { FoundSettings } from '../solve/targets.ts';
 import { readSvg } from '../svg/read.ts';
-import { casesOf, type SheetCase, toReport } from './cases.ts';
+import { alikeTo, casesOf, type SheetCase, toReport } from './cases.ts';
 import { EXIT_HOLD, EXIT_READY } from './check.ts';
 import { terminalOptions } from './colour.ts';
 import type { Io } from './io.ts';
@@ -31,7 +31,13 @@ export async function pump(layoutPath: string, options: CheckOptions, io: Io): P
     refuseNoTargets(cases, sheetFile.shown);
     const analysed: PumpedCase[] = [];
     for (const { name, sheet } of cases) {
-      const input = { layout, sheet, file: layoutFile.name, layoutSha256: layoutFile.sha256 };
+      const input = {
+        layout,
+        sheet,
+        file: layoutFile.name,
+        layoutSha256: layoutFile.sha256,
+        ...alikeTo(analysed[0]?.analysis.network),
+      };
       const onStage: OnStage = (stage) => progress.stage(name === null ? stage : `${name}: ${stage}`);
       analysed.push({ name, ...(await analyseCase(input, onStage)) });
     }

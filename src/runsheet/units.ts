@@ -5,7 +5,7 @@
  * value it rounds (mmHg, torr, psi) or lacks (inH2O, cP, thou) are defined here from exact factors:
  * g = 9.80665 m/s², lb = 0.45359237 kg, in = 0.0254 m, atm = 101325 Pa (NIST SP 811, appendix B.8).
  */
-import { type Unit as MathUnit, type UnitCtor, UnitDependencies } from 'mathjs';
+import { createUnitClass, type Unit as MathUnit, type UnitCtor } from 'mathjs';
 import { nearest } from './nearest.ts';
 import { quote } from './quote.ts';
 
@@ -160,11 +160,7 @@ const RATIO = 'ratio';
  * for complex numbers, fractions and matrices, which takes 0.1 s and is never asked for here.
  */
 function unitClass(): UnitCtor {
-  // mathjs declares its dependency maps as opaque, and Unit without its static functions; both are there in mathjs 15
-  // (factoriesAny.js, Unit.js), and the tests of every spelling would fail without them.
-  const { createUnitClass } = UnitDependencies as unknown as {
-    readonly createUnitClass: (parts: Readonly<Record<string, unknown>>) => unknown;
-  };
+  // mathjs declares Unit without its static functions; createUnit is documented and there in mathjs 15 (Unit.js).
   const ctor = createUnitClass({
     config: { number: 'number', predictable: false },
     addScalar: (a: number, b: number) => a + b,
