@@ -10,7 +10,7 @@ import { measureStages, STAGES, type StageTimes } from './stages.ts';
 
 /**
  * npm run bench: everything the project claims of its speed, as ratios measured in this run. Nothing is asserted; numbers
- * depend on the machine, ratios much less. Argument: `start`, `size`, `peer`, `factor`, `spread` or nothing for all.
+ * depend on the machine, ratios much less. Argument: `start`, `size`, `report`, `peer`, `factor`, `spread` or nothing for all.
  */
 export async function main(args: readonly string[]): Promise<void> {
   const wanted = args[0];
@@ -19,6 +19,7 @@ export async function main(args: readonly string[]): Promise<void> {
   try {
     if (wanted === undefined || wanted === 'start') measureStart(folder);
     if (wanted === undefined || wanted === 'size') await measureSizes(folder);
+    if (wanted === undefined || wanted === 'report') measureReports(folder);
     if (wanted === undefined || wanted === 'peer') measurePeer(folder);
     if (wanted === undefined || wanted === 'factor') measureFactorisation();
     if (wanted === undefined || wanted === 'spread') await measureSpread();
@@ -96,17 +97,39 @@ async function measureSizes(folder: string): Promise<void> {
 }
 
 /** Wall time and peak memory of `check --json --detail ports` as a process of its own, nothing written. */
-function wholeProcess(folder: string, layout: BigLayout): { wall: number; memory: number } {
+function wholeProcess(
+  folder: string,
+  layout: BigLayout,
+  options: readonly string[] = ['--json', '--detail', 'ports'],
+): { wall: number; memory: number } {
   const path = put(folder, layout);
   const program = `process.on('exit',()=>process.stderr.write('peak '+process.resourceUsage().maxRSS));process.argv.splice(1,0,'rillcheck');await import(${JSON.stringify(new URL(`file://${process.cwd()}/dist/bin.js`).href)})`;
   const begin = performance.now();
   const { stderr } = spawnSync(
     process.execPath,
-    ['--input-type=module', '-e', program, '--', 'check', path, '--json', '--detail', 'ports'],
+    ['--input-type=module', '-e', program, '--', 'check', path, ...options],
     { stdio: ['ignore', 'ignore', 'pipe'], maxBuffer: 1 << 28 },
   );
   const wall = (performance.now() - begin) / 1000;
   return { wall, memory: Number(/peak (\d+)/.exec(stderr.toString())?.[1]) / 1024 };
+}
+
+function measureReports(folder: string): void {
+  console.log('\nReports of 100 000 segments: seconds and peak memory of whole processes');
+  for (const layout of [lattice(224), lanes(1000, 100)]) {
+    for (const format of ['none', 'pdf', 'svg', 'csv,json']) {
+      const { wall, memory } = wholeProcess(folder, layout, [
+        '--out',
+        folder,
+        '--formats',
+        format,
+        '--quiet',
+      ]);
+      console.log(
+        `  ${layout.name.padEnd(16)} ${format.padEnd(9)} ${wall.toFixed(2).padStart(6)} s ${memory.toFixed(0).padStart(5)} MB`,
+      );
+    }
+  }
 }
 
 function measurePeer(folder: string): void {
