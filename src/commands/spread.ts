@@ -12,7 +12,7 @@ import { terminalSummary } from '../report/terminal.ts';
 import { parseRunSheet } from '../runsheet/parse.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { RunSheet, Tolerances } from '../runsheet/types.ts';
-import { hasSpread, type Pace, type SpreadOptions, spreadOf } from '../spread/spread.ts';
+import { type Pace, type SpreadOptions, spreadOf, whyNoSpread } from '../spread/spread.ts';
 import type { Spread } from '../spread/types.ts';
 import { readSvg } from '../svg/read.ts';
 import { casesOf, type SheetCase, toReport } from './cases.ts';
@@ -154,11 +154,12 @@ function withTolerances({ name, sheet }: SheetCase, file: string): VaryingCase {
 }
 
 function refuseNothingToVary({ network }: Analysis, { name, sheet, tolerances, file }: VaryingCase): void {
-  if (hasSpread(network, tolerances)) return;
+  const idle = whyNoSpread(network, tolerances);
+  if (idle === null) return;
   const line = sheet.lineOf(['tolerances']);
   throw new InputError(
     line === null ? file : `${file}:${line}`,
-    `tolerances: nothing in them moves anything on this chip${inCase(name)}; ${EXAMPLE}`,
+    `tolerances: nothing in them moves anything on this chip${inCase(name)}${idle.length === 0 ? '' : ` (${idle.slice(0, 3).join('; ')})`}; ${EXAMPLE}`,
   );
 }
 

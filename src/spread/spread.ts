@@ -82,9 +82,10 @@ export async function spreadOf(
   };
 }
 
-/** Whether any tolerance moves anything on this chip, without computing how far. */
-export function hasSpread(network: Network, tolerances: Tolerances): boolean {
-  return listVariables(network.chip, tolerances).variables.length > 0;
+/** Why no tolerance moves anything on this chip, one reason each; null when one does. Computes nothing. */
+export function whyNoSpread(network: Network, tolerances: Tolerances): readonly string[] | null {
+  const { variables, idle } = listVariables(network.chip, tolerances);
+  return variables.length > 0 ? null : idle;
 }
 
 interface LinearPart {

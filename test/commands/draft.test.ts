@@ -80,6 +80,23 @@ describe('rillcheck draft', () => {
     expect(code).toBe(0);
   });
 
+  it('offers every limit and tolerance with a comment of its own, and each line is good as it stands', async () => {
+    put('culture.svg', readFileSync(join(DEMOS, 'culture.svg'), 'utf8'));
+    const { out } = await rillcheck('draft', 'culture.svg', '-r', '-');
+    const lines = out.split('\n');
+    const offered = lines.slice(
+      lines.findIndex((line) => line.startsWith('limits:')),
+      lines.findIndex((line) => line.startsWith('# cases:')),
+    );
+    for (const line of offered.filter((text) => text.startsWith('#')))
+      expect(line).toMatch(/^# {2}\w+: .+ # \w/);
+    const sheet = parseRunSheet(offered.map((line) => line.replace(/^#/, '')).join('\n'), 'all.run.yaml');
+    const { depthByLayer, widthBias, widthOwn, pressureByPort, flowByPort, ...given } =
+      sheet.tolerances ?? {};
+    for (const value of [...Object.values(sheet.limits), ...Object.values(given)])
+      expect(value).not.toBeNull();
+  });
+
   it('never writes over a run sheet without --force, and then writes it anew', async () => {
     put('culture.svg', readFileSync(join(DEMOS, 'culture.svg'), 'utf8'));
     put('culture.run.yaml', 'depth: 50 um\n');

@@ -106,7 +106,7 @@ test('without tolerances there is nothing to do: exit 2, and what to write', asy
     'rillcheck: chip.run.yaml: tolerances: there are none; write for example "tolerances: { depth: 5 %, width: 2 um, temperature: 1 degC }"\n',
   );
   expect(await refused(SHEET.replace(/tolerances.*\n/, 'tolerances: { bore: 5 % }\n'))).toContain(
-    'chip.run.yaml:5: tolerances: nothing in them moves anything on this chip',
+    'chip.run.yaml:5: tolerances: nothing in them moves anything on this chip (bore: no port has tubing); write for',
   );
   expect(await refused(null)).toContain('there is no such run sheet; spread needs one with tolerances');
 });

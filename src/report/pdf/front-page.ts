@@ -172,7 +172,9 @@ export function portsTable(
         ] as const)
       : []),
     ...(withJoints
-      ? ([{ head: 'joints not resolved', unit: 'could move it by ±', align: 'right', width: 'fit' }] as const)
+      ? ([
+          { head: 'joints not resolved', unit: 'could move this flow by ±', align: 'right', width: 'fit' },
+        ] as const)
       : []),
   ];
   const rows = shown.map((port) =>

@@ -144,7 +144,7 @@ function writeCentrelineFlows(
       { head: 'port', align: 'left', width: 'share' },
       { head: 'flow into chip, as counted', align: 'right', width: 'fit' },
       { head: 'by centrelines alone', align: 'right', width: 'fit' },
-      { head: 'joints not resolved could move it by ±', align: 'right', width: 'fit' },
+      { head: 'joints not resolved could move this flow by ±', align: 'right', width: 'fit' },
     ],
     ports.map(({ name, flow_m3_s, joint_flow_share }, i) =>
       cells(
