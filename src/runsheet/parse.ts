@@ -275,6 +275,7 @@ function toTolerances(given: NonNullable<SheetValues['tolerances']>): Tolerances
   return {
     depth: given.depth?.all ?? null,
     depthByLayer: given.depth?.byName ?? noNames(),
+    depthCommon: given.depth_common ?? null,
     width: given.width ?? null,
     widthBias: given.width_bias ?? null,
     widthOwn: given.width_own ?? null,

@@ -470,6 +470,7 @@ const tolerances = checked(
   keys(
     {
       depth: v.optional(toleranceByName('length', '5 %')),
+      depth_common: v.optional(tolerance('length', 'with share', '3 %')),
       width: v.optional(tolerance('length', 'with share', '2 um')),
       width_bias: v.optional(tolerance('length', 'with share', '2 um')),
       width_own: v.optional(tolerance('length', 'with share', '1 um')),

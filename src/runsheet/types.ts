@@ -108,6 +108,8 @@ export interface Tolerances {
   /** For every layer not named. */
   readonly depth: Tolerance | null;
   readonly depthByLayer: Readonly<Record<string, Tolerance>>;
+  /** A part common to all layers, beside what each has of its own. */
+  readonly depthCommon: Tolerance | null;
   /** The whole: bias of the mask and own part of each channel together. */
   readonly width: Tolerance | null;
   /** One bias common to the whole mask. */

@@ -160,16 +160,17 @@ function logDerivatives({ chip, variables, sections }: SpreadModel): LogDerivati
     if (fluid.densityAt !== undefined) density[k] = slopeAt(fluid.densityAt, fluid.temperatureK);
   });
   const ofSection = sections.section.map((section): SectionLog[] => {
-    const { drawnWidthM, ductWidthM, depthM, profile, depthVariable, maskVariable, ownVariable } = section;
+    const { drawnWidthM, ductWidthM, depthM, profile, maskVariable, ownVariable } = section;
     const logs: SectionLog[] = [];
     for (const k of [maskVariable, ownVariable]) {
       if (k >= 0)
         logs.push({ variable: k, byWidth: sizeOf(variables[k], 1, drawnWidthM) / ductWidthM, byDepth: 0 });
     }
-    if (depthVariable >= 0) {
-      const deeper = sizeOf(variables[depthVariable], 1, depthM);
+    for (const k of [section.depthVariable, section.commonDepthVariable]) {
+      if (k < 0) continue;
+      const deeper = sizeOf(variables[k], 1, depthM);
       const undercut = profile === 'isotropic' ? (Math.PI * deeper) / 2 : 0;
-      logs.push({ variable: depthVariable, byWidth: undercut / ductWidthM, byDepth: deeper / depthM });
+      logs.push({ variable: k, byWidth: undercut / ductWidthM, byDepth: deeper / depthM });
     }
     return logs;
   });

@@ -132,6 +132,7 @@ export interface Section {
   readonly profile: Profile;
   /** Variables that move it, −1 for none. */
   readonly depthVariable: number;
+  readonly commonDepthVariable: number;
   readonly maskVariable: number;
   readonly ownVariable: number;
 }
@@ -140,10 +141,12 @@ function gatherSections({ channels }: Chip, variables: readonly Variable[]): Sec
   const depthOfLayer = new Map<number, number>();
   const ownOfChannel = new Map<number, number>();
   let maskVariable = -1;
+  let commonDepthVariable = -1;
   variables.forEach((variable, k) => {
     if (variable.kind === 'depth') depthOfLayer.set(variable.layer, k);
     if (variable.kind === 'own width') ownOfChannel.set(variable.channel, k);
     if (variable.kind === 'mask width') maskVariable = k;
+    if (variable.kind === 'common depth') commonDepthVariable = k;
   });
   const known = new Map<string, number>();
   const section: Section[] = [];
@@ -154,6 +157,7 @@ function gatherSections({ channels }: Chip, variables: readonly Variable[]): Sec
       depthM: channel.depthMm / 1000,
       profile: channel.profile,
       depthVariable: depthOfLayer.get(channel.layer) ?? -1,
+      commonDepthVariable,
       maskVariable,
       ownVariable: ownOfChannel.get(c) ?? -1,
     };
@@ -280,11 +284,13 @@ function formAt(
   variables: readonly Variable[],
   x: Float64Array,
 ): DuctForm | null | 'closed' {
-  const { drawnWidthM, ductWidthM, depthM, profile, depthVariable, maskVariable, ownVariable } = section;
+  const { drawnWidthM, ductWidthM, depthM, profile, maskVariable, ownVariable } = section;
   if (Number.isNaN(ductWidthM) || Number.isNaN(depthM)) return null;
   let wider = 0;
   for (const k of [maskVariable, ownVariable]) if (k >= 0) wider += sizeOf(variables[k], x[k], drawnWidthM);
-  const deeper = depthVariable < 0 ? 0 : sizeOf(variables[depthVariable], x[depthVariable], depthM);
+  let deeper = 0;
+  for (const k of [section.depthVariable, section.commonDepthVariable])
+    if (k >= 0) deeper += sizeOf(variables[k], x[k], depthM);
   if (profile === 'rectangle') {
     const [width, depth] = [ductWidthM + wider, depthM + deeper];
     return width > 0 && depth > 0 ? sectionForm(profile, width, depth) : 'closed';

@@ -22,6 +22,8 @@ export type Variable = {
 type VariableKind =
   /** Common to every channel of a layer. */
   | { readonly kind: 'depth'; readonly layer: number }
+  /** Common to all layers. */
+  | { readonly kind: 'common depth' }
   /** Common to the whole mask. */
   | { readonly kind: 'mask width' }
   | { readonly kind: 'own width'; readonly channel: number }
@@ -49,7 +51,8 @@ export function deviate({ value, distribution }: Tolerance, u: number): number {
 }
 
 /**
- * Everything that the run sheet lets vary on this chip. Depth is common to a layer and independent between layers; `width` is
+ * Everything that the run sheet lets vary on this chip. Depth is common to a layer and independent between layers,
+ * but for a part common to all in `depth_common`; `width` is
  * taken as one bias common to the mask, while `width_bias` and `width_own` give that and a part of its own for each channel;
  * the bore is common to all tubing; port pressures and flows are independent between ports.
  * A pressure tolerance for all ports is for those given a pressure or a head; an open well is meant only when it is named.
@@ -106,7 +109,12 @@ type Add = (
   why: string,
 ) => void;
 
-function addDepths(chip: Chip, { depth, depthByLayer }: Tolerances, add: Add, idle: string[]): void {
+function addDepths(
+  chip: Chip,
+  { depth, depthByLayer, depthCommon }: Tolerances,
+  add: Add,
+  idle: string[],
+): void {
   const byKey = new Map(Object.entries(depthByLayer).map(([name, own]) => [layerKey(name), own]));
   const used = new Set<number>();
   for (const { layer, depthMm } of chip.channels) if (!Number.isNaN(depthMm)) used.add(layer);
@@ -120,6 +128,9 @@ function addDepths(chip: Chip, { depth, depthByLayer }: Tolerances, add: Add, id
     add(`depth:${shown}`, `etch depth of ${shown}`, tolerance, kinds, 'no channel of it has a depth');
   });
   for (const key of byKey.keys()) idle.push(`depth:${key}: no channel lies in that layer`);
+  if (depthCommon === null) return;
+  const kinds: readonly VariableKind[] = used.size > 0 ? [{ kind: 'common depth' }] : [];
+  add('depth_common', 'etch depth of all layers together', depthCommon, kinds, 'no channel has a depth');
 }
 
 function addPorts(
