@@ -2,8 +2,8 @@ import { assembleChip } from '../chip/assemble.ts';
 import { DEFAULT_MAX_REYNOLDS } from '../chip/defaults.ts';
 import type { Channel, Chip } from '../chip/types.ts';
 import type { Layout } from '../layout/types.ts';
-import { formatMm } from '../report/quantity.ts';
 import { isPattern, layerKey } from '../runsheet/names.ts';
+import { formatMm } from '../runsheet/shown.ts';
 import { commentText, isDraftable, keyText } from './yaml-text.ts';
 
 export interface DraftInput {

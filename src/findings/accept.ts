@@ -1,5 +1,5 @@
-import { measureText, type Show } from '../report/quantity.ts';
 import { UNACCEPTABLE_RULES } from '../runsheet/measures.ts';
+import { measureText, type Show } from '../runsheet/shown.ts';
 import type { AcceptEntry } from '../runsheet/types.ts';
 import { isAbove, isBelow, toFinding } from './rule.ts';
 import type { Finding, NotRun } from './types.ts';

@@ -1,4 +1,4 @@
-import { formatNumber } from '../report/quantity.ts';
+import { formatNumber } from '../runsheet/shown.ts';
 import type { FindingContext } from './context.ts';
 import { gapToHole } from './painted.ts';
 import { channelPaths, pointOn } from './paths.ts';

@@ -1,4 +1,4 @@
-import { formatMm } from '../report/quantity.ts';
+import { formatMm } from '../runsheet/shown.ts';
 import type { FindingContext } from './context.ts';
 import { endPlace, type NearMiss, nearMisses, openEnds } from './misses.ts';
 import { found, type Rule, toFinding } from './rule.ts';

@@ -3,7 +3,7 @@
  * is exact: of all windowed flows by one solve per port with a level, or of one flow by all ports by one adjoint solve, whichever are fewer.
  */
 import { GRAVITY_M_S2 } from '../physics/constants.ts';
-import { formatNumber, formatShare } from '../report/quantity.ts';
+import { formatNumber, formatShare } from '../runsheet/shown.ts';
 import { drivesOf } from '../solve/drives.ts';
 import { factorFlow, kindsOf, loadOf, prepareFlow } from '../solve/flow-state.ts';
 import { solveGraph } from '../solve/graph.ts';

@@ -1,4 +1,4 @@
-import type { Show } from '../report/quantity.ts';
+import type { Show } from '../runsheet/shown.ts';
 import type { PumpLimitEntry } from '../runsheet/types.ts';
 import type { FoundSettings, FoundTarget } from '../solve/targets.ts';
 import { lineAt } from '../solve/targets-limits.ts';

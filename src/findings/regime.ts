@@ -1,7 +1,7 @@
 import { NODE_KINDS } from '../network/types.ts';
 import { CURVED_FLOW_DEAN, deanNumber } from '../physics/dean.ts';
 import { entranceLength, spreadingLength } from '../physics/entrance.ts';
-import { formatNumber } from '../report/quantity.ts';
+import { formatNumber } from '../runsheet/shown.ts';
 import type { FindingContext } from './context.ts';
 import { reachState, roomLengthM } from './ducts.ts';
 import { type Opening, openingsAt, reachesAtNodes } from './openings.ts';

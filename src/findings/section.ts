@@ -1,6 +1,6 @@
 import type { Channel } from '../chip/types.ts';
 import { meanRoofRise, risenResistanceFactor } from '../physics/roof.ts';
-import { formatNumber, formatShare } from '../report/quantity.ts';
+import { formatNumber, formatShare } from '../runsheet/shown.ts';
 import { acrossMark, middleOfChannel } from './centrelines.ts';
 import type { FindingContext } from './context.ts';
 import { middleOfReach, othersText, reachesOf, reachNames, worstReach } from './reaches.ts';

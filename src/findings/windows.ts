@@ -1,6 +1,6 @@
 import type { Channel } from '../chip/types.ts';
 import { floorShareInside, sideShareInside } from '../physics/duct.ts';
-import { formatNumber, formatShare, type Shown } from '../report/quantity.ts';
+import { formatNumber, formatShare, type Shown } from '../runsheet/shown.ts';
 import type { ChannelEntry, ShearWindow, Window } from '../runsheet/types.ts';
 import type { FindingContext } from './context.ts';
 import { type ReachState, reachState, roomLengthM } from './ducts.ts';

@@ -1,5 +1,5 @@
 import type { Sourced } from '../chip/types.ts';
-import { formatMm, formatNumber, type Show, showOf } from '../report/quantity.ts';
+import { formatMm, formatNumber, type Show, showOf } from '../runsheet/shown.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 
 /** Numbers for messages, in the units that the run sheet's `show` asks for. */

@@ -1,3 +1,4 @@
+import { formatNumber, type Shown, type Unit } from '../runsheet/shown.ts';
 import {
   COLOUR_STEPS,
   type ColourScale,
@@ -9,7 +10,6 @@ import {
 } from './colour-scale.ts';
 import { type LabelGround, type LabelWish, type PlacedLabel, placeLabels } from './label-placement.ts';
 import { type Box, type ChipGeometry, stripHalfWidthMm } from './map-geometry.ts';
-import { formatNumber, type Shown, type Unit } from './quantity.ts';
 import { hasWindow, type MapQuantity, reachValues } from './reach-values.ts';
 import type { ReportedCase } from './report.ts';
 

@@ -1,10 +1,10 @@
 import type { Finding } from '../findings/types.ts';
+import { formatNumber } from '../runsheet/shown.ts';
 import { niceStep } from './colour-scale.ts';
 import { type LabelWish, placeLabels } from './label-placement.ts';
 import type { MapHole, MapLabel, MapStroke, ScaleBar } from './map.ts';
 import { shortName } from './map.ts';
 import { type Box, type ChipGeometry, stripHalfWidthMm } from './map-geometry.ts';
-import { formatNumber } from './quantity.ts';
 
 /** A close-up of a finding's place as data; paper millimetres from the picture's upper left corner, everything clipped to it. */
 export interface PlaceDrawing {

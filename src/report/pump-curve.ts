@@ -1,11 +1,11 @@
 import type { Network } from '../network/types.ts';
 import { sectionForm } from '../physics/section.ts';
+import { formatNumber, type Show, type Unit } from '../runsheet/shown.ts';
 import type { PumpLimitEntry, Window } from '../runsheet/types.ts';
 import type { FoundTarget } from '../solve/targets.ts';
 import { lineAt, settingsFor } from '../solve/targets-limits.ts';
 import { targetValue } from '../solve/targets-wanted.ts';
 import { niceStep } from './colour-scale.ts';
-import { formatNumber, type Show, type Unit } from './quantity.ts';
 
 /** A curve of setting against target as data, in the units shown: target along x, setting along y. */
 export interface PumpCurve {

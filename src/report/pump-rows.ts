@@ -1,8 +1,8 @@
 import type { Network } from '../network/types.ts';
+import { formatNumber, type Show, type Shown } from '../runsheet/shown.ts';
 import type { PumpLimitEntry, Window } from '../runsheet/types.ts';
 import type { FoundTarget } from '../solve/targets.ts';
 import { lineAt } from '../solve/targets-limits.ts';
-import { formatNumber, type Show, type Shown } from './quantity.ts';
 
 /** Cells that the terminal and the PDF both show of one target: what is wanted, by which port, and what the found settings reach. */
 export interface TargetCells {

@@ -1,6 +1,6 @@
 import type { Channel } from '../chip/types.ts';
+import { formatNumber, formatShare, type Show, type Shown } from '../runsheet/shown.ts';
 import type { Window } from '../runsheet/types.ts';
-import { formatNumber, formatShare, type Show, type Shown } from './quantity.ts';
 import type { ReportedCase } from './report.ts';
 import type { ReachRow } from './result-schema.ts';
 import { sectionCache } from './section-values.ts';

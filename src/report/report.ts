@@ -1,9 +1,9 @@
 import type { FindingReport } from '../findings/types.ts';
 import type { Network } from '../network/types.ts';
+import { type Show, showOf } from '../runsheet/shown.ts';
 import type { FoundSettings } from '../solve/targets.ts';
 import type { FlowState } from '../solve/types.ts';
 import type { Spread } from '../spread/types.ts';
-import { type Show, showOf } from './quantity.ts';
 import { buildCasesResult, buildResult, type CasePart, type Result, type ResultInput } from './result.ts';
 
 /** One case with everything that its pages, pictures and summary are drawn from. */

@@ -1,7 +1,7 @@
 import { DEFAULT_MAX_REYNOLDS } from '../chip/defaults.ts';
+import { formatNumber, formatShare, showOf } from '../runsheet/shown.ts';
 import type { SectionInput, SectionState } from '../section/section.ts';
 import { wrapText } from './plain-text.ts';
-import { formatNumber, formatShare, showOf } from './quantity.ts';
 import { textTable } from './text-table.ts';
 
 export interface SectionFluid {

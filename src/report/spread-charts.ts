@@ -1,6 +1,6 @@
+import { formatNumber, type Show } from '../runsheet/shown.ts';
 import type { Spread, SpreadOutput } from '../spread/types.ts';
 import { niceStep } from './colour-scale.ts';
-import { formatNumber, type Show } from './quantity.ts';
 import { keptShareText, outputText, outputUnit, quantityText } from './spread-rows.ts';
 
 /** A distribution as a picture in data: numbers in the shown unit along the axis, heights as shares of the tallest bar or curve. */

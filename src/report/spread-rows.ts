@@ -1,8 +1,8 @@
+import { formatNumber, formatShare, type Show, type Shown, type Unit } from '../runsheet/shown.ts';
 import type { Tolerance } from '../runsheet/types.ts';
 import type { OutputQuantity } from '../spread/outputs.ts';
 import type { Spread, SpreadOutput } from '../spread/types.ts';
 import type { Cause } from '../spread/variables.ts';
-import { formatNumber, formatShare, type Show, type Shown, type Unit } from './quantity.ts';
 import { keptShare } from './spread-part.ts';
 
 const QUANTITIES: Readonly<Record<OutputQuantity, { readonly text: string; readonly shown: Shown | null }>> =

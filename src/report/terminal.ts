@@ -1,6 +1,6 @@
 import picocolors from 'picocolors';
+import { formatMm } from '../runsheet/shown.ts';
 import { cleanText, clipText, displayWidth, padText, wrapText } from './plain-text.ts';
-import { formatMm } from './quantity.ts';
 import { hasWindow, outsideWindows, reachesThatMatter, windowTexts } from './reach-values.ts';
 import type { Report, ReportedCase } from './report.ts';
 import type { FindingRow } from './result-schema.ts';

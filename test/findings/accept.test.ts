@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest';
 import { acceptFindings } from '../../src/findings/accept.ts';
 import { toFinding } from '../../src/findings/rule.ts';
 import type { Finding } from '../../src/findings/types.ts';
-import { showOf } from '../../src/report/quantity.ts';
+import { showOf } from '../../src/runsheet/shown.ts';
 import type { AcceptEntry } from '../../src/runsheet/types.ts';
 
 const SHOW = showOf(null);

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { pumpCurve } from '../../src/report/pump-curve.ts';
-import { showOf } from '../../src/report/quantity.ts';
+import { showOf } from '../../src/runsheet/shown.ts';
 import { findSettings } from '../../src/solve/targets.ts';
 import { drawing, networkFrom } from '../solve/network-from.ts';
 

@@ -1,5 +1,4 @@
 import { expect, test } from 'vitest';
-import { showOf } from '../../src/report/quantity.ts';
 import { distributionChart } from '../../src/report/spread-charts.ts';
 import { keptShare } from '../../src/report/spread-part.ts';
 import {
@@ -11,6 +10,7 @@ import {
   toleranceText,
   yieldText,
 } from '../../src/report/spread-rows.ts';
+import { showOf } from '../../src/runsheet/shown.ts';
 import { oneDuct, outputNamed, spreadOfDrawing } from './spread-of.ts';
 
 const SHEET = `fluid: water

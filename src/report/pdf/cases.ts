@@ -1,5 +1,5 @@
+import { formatNumber, type Show } from '../../runsheet/shown.ts';
 import { cleanText } from '../plain-text.ts';
-import { formatNumber, type Show } from '../quantity.ts';
 import { hasWindow, outsideWindows, windowTexts } from '../reach-values.ts';
 import type { ReportedCase } from '../report.ts';
 import type { CountsRow, ReachRow } from '../result-schema.ts';

@@ -1,6 +1,6 @@
 import type { Finding } from '../../findings/types.ts';
+import { formatMm, measureText } from '../../runsheet/shown.ts';
 import { drawPlace, type PlaceDrawing } from '../place.ts';
-import { formatMm, measureText } from '../quantity.ts';
 import { plural, verdictLine } from '../verdict-line.ts';
 import { BODY, BODY_BOLD, type PageContext, SMALL } from './context.ts';
 import { inMillimetres, paintLabel, paintScaleBar, paintStrokes, putCentred } from './paint-map.ts';

@@ -1,6 +1,4 @@
 import type { Chip } from '../../chip/types.ts';
-import { drawMap, mapNotes } from '../map.ts';
-import { cleanText } from '../plain-text.ts';
 import {
   formatBound,
   formatMm,
@@ -9,7 +7,9 @@ import {
   type Show,
   type Shown,
   type Unit,
-} from '../quantity.ts';
+} from '../../runsheet/shown.ts';
+import { drawMap, mapNotes } from '../map.ts';
+import { cleanText } from '../plain-text.ts';
 import { hasWindow, outsideWindows, reachesThatMatter, windowTexts } from '../reach-values.ts';
 import type { PortRow, ReachRow } from '../result-schema.ts';
 import { plural, verdictCounts } from '../verdict-line.ts';

@@ -1,5 +1,5 @@
 import { sectionForm } from '../../physics/section.ts';
-import { formatNumber, type Show } from '../quantity.ts';
+import { formatNumber, type Show } from '../../runsheet/shown.ts';
 import { reachesThatMatter } from '../reach-values.ts';
 import type { ReportedCase } from '../report.ts';
 import type { ReachRow } from '../result-schema.ts';

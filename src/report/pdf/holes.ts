@@ -1,4 +1,4 @@
-import { formatMm } from '../quantity.ts';
+import { formatMm } from '../../runsheet/shown.ts';
 import { BODY, type PageContext, SMALL } from './context.ts';
 import { cells, drawTable } from './table.ts';
 

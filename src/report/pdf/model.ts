@@ -1,5 +1,5 @@
 import type { Chip, Sourced } from '../../chip/types.ts';
-import { formatBound, formatMm, formatNumber } from '../quantity.ts';
+import { formatBound, formatMm, formatNumber } from '../../runsheet/shown.ts';
 import type { ReportedCase } from '../report.ts';
 import { BODY, depthFrom, type PageContext } from './context.ts';
 import type { Element, Paper } from './paper.ts';

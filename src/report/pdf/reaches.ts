@@ -6,7 +6,7 @@ import {
   type Show,
   type Shown,
   type Unit,
-} from '../quantity.ts';
+} from '../../runsheet/shown.ts';
 import { hasWindow, outsideWindows, windowTexts } from '../reach-values.ts';
 import type { ReportedCase } from '../report.ts';
 import type { ReachRow } from '../result-schema.ts';

@@ -1,4 +1,4 @@
-import { formatMm, formatNumber, largestMagnitude, type Shown } from '../quantity.ts';
+import { formatMm, formatNumber, largestMagnitude, type Shown } from '../../runsheet/shown.ts';
 import type { ReportedCase } from '../report.ts';
 import type { SegmentRow } from '../result-schema.ts';
 import { type PageContext, SMALL } from './context.ts';

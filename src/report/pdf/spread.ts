@@ -1,6 +1,6 @@
+import { formatShare, type Show } from '../../runsheet/shown.ts';
 import type { Spread, SpreadOutput } from '../../spread/types.ts';
 import { cleanText } from '../plain-text.ts';
-import { formatShare, type Show } from '../quantity.ts';
 import { type DistributionChart, distributionChart } from '../spread-charts.ts';
 import {
   cornerText,

@@ -1,5 +1,5 @@
 import { describe, expect, test } from 'vitest';
-import { formatBound, formatMm, formatNumber, showOf } from '../../src/report/quantity.ts';
+import { formatBound, formatMm, formatNumber, showOf } from '../../src/runsheet/shown.ts';
 
 describe('numbers for people', () => {
   test.each([

@@ -1,5 +1,5 @@
-import type { ShowUnits } from '../runsheet/types.ts';
-import { unitFactor } from '../runsheet/units.ts';
+import type { ShowUnits } from './types.ts';
+import { unitFactor } from './units.ts';
 
 /** What a number on screen or paper measures. Lengths along a channel and across it have units of their own. */
 export type Shown =
