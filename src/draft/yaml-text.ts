@@ -1,3 +1,5 @@
+import { UNUSABLE_KEYS } from '../runsheet/names.ts';
+
 /** Names of a drawing in YAML text. They may come from anyone, and must come out of a reader as they went in, or not go in at all. */
 
 /** YAML reads a key on one line of at most 1024 characters; room is left for escapes. */
@@ -5,11 +7,8 @@ const LONGEST = 150;
 
 /** Whether a name can be written as a key: not empty, not too long, no half characters, nothing that a record can't hold. */
 export function isDraftable(name: string): boolean {
-  return name.trim() !== '' && name.length <= LONGEST && !/\p{Cs}/u.test(name) && !FORBIDDEN.has(name);
+  return name.trim() !== '' && name.length <= LONGEST && !/\p{Cs}/u.test(name) && !UNUSABLE_KEYS.has(name);
 }
-
-/** Names that a run sheet refuses. */
-const FORBIDDEN: ReadonlySet<string> = new Set(['__proto__', 'constructor', 'prototype']);
 
 /** A key or text: plain where nobody could read it as anything else, else in double quotes with escapes. */
 export function keyText(name: string): string {

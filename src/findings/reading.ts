@@ -1,4 +1,5 @@
 import type { ReadingFault } from '../chip/types.ts';
+import { UNUSABLE_KEYS } from '../runsheet/names.ts';
 import { middleOfChannel } from './centrelines.ts';
 import type { FindingContext } from './context.ts';
 import { found, type Rule, toFinding } from './rule.ts';
@@ -109,7 +110,9 @@ function unsetPorts({ chip }: FindingContext): Finding[] {
         fix:
           drawnName === null
             ? 'give the circle a name in the drawing and its pressure, flow or head in the run sheet (or open, or sealed); name it or its layer under ignore: if it is no port, or name the layer of the ports under ports_layer:'
-            : `write in the run sheet ports: { ${keyText(name)}: { pressure: 10 kPa } } (or flow or head, or just open or sealed)`,
+            : UNUSABLE_KEYS.has(drawnName)
+              ? `give the circle another name than ${name}, which no run sheet can hold, and its condition in the run sheet`
+              : `write in the run sheet ports: { ${keyText(name)}: { pressure: 10 kPa } } (or flow or head, or just open or sealed)`,
         at: { xMm, yMm },
         names: [name],
       }),

@@ -35,3 +35,6 @@ export function matches(pattern: string, name: string): boolean {
   while (pattern[p] === '*') p++;
   return p === pattern.length;
 }
+
+/** Names that no run sheet can hold: as keys of an object they would be something else. */
+export const UNUSABLE_KEYS: ReadonlySet<string> = new Set(['__proto__', 'constructor', 'prototype']);

@@ -5,6 +5,7 @@
  * tags and second documents are refused, nesting and size are bounded before anything recursive runs: an input of
  * 1 MB costs a few seconds at worst.
  */
+
 import {
   Composer,
   type CST,
@@ -20,6 +21,7 @@ import {
   type YAMLError,
 } from 'yaml';
 import { InputError } from '../errors.ts';
+import { UNUSABLE_KEYS } from './names.ts';
 import { type KeyPath, pathText } from './path-text.ts';
 import { quote } from './quote.ts';
 
@@ -277,7 +279,7 @@ function keyOf(
   }
   const text = String(key.value ?? '');
   if (text === '') throw new InputError(`${file}:${line}`, 'has an empty key; give it a name');
-  if (FORBIDDEN.has(text)) {
+  if (UNUSABLE_KEYS.has(text)) {
     throw new InputError(
       `${file}:${line}`,
       `${quote(text)} can't be a name in a run sheet; give it another name in the drawing`,
@@ -300,6 +302,3 @@ function refuseComma(
     `${pathText(path)}: ${quote(`${whole},${rest}`)} has a comma; decimals take a point; write for example ${quote(`${whole}.${rest}`)}`,
   );
 }
-
-/** Names that plain objects of the language treat specially. */
-const FORBIDDEN: ReadonlySet<string> = new Set(['__proto__', 'constructor', 'prototype']);

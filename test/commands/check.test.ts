@@ -48,6 +48,12 @@ describe('rillcheck check', () => {
     expect(out).toContain('missing-depth');
   });
 
+  it('asks for another name where a port has one that no run sheet can hold', async () => {
+    put('chip.svg', CHIP.replace('id="in"', 'id="__proto__"'));
+    const { out } = await check('chip.svg', '-f', 'none');
+    expect(out).toContain('give the circle another name than __proto__');
+  });
+
   it('names reports after a run sheet that is not the layout’s own', async () => {
     put('chip.svg', CHIP);
     put('trial.run.yaml', SHEET);
