@@ -1,5 +1,5 @@
 import type { Report } from '../report.ts';
-import { verdictLine } from '../verdict-line.ts';
+import { plural, verdictLine } from '../verdict-line.ts';
 import { writeCases } from './cases.ts';
 import { writeCautions } from './cautions.ts';
 import { isoDate, pageContext } from './context.ts';
@@ -69,7 +69,7 @@ function headLine({ result, cases }: Report, title: string): string {
   const drawing = sheet === null ? '' : drawingText(sheet.drawing);
   const verdict =
     'cases' in result
-      ? `${cases.length} cases: ${result.verdict}`
+      ? `${plural(cases.length, 'case')}: ${result.verdict}`
       : verdictLine(result.verdict, result.counts);
   return [title, drawing, verdict].filter((part) => part !== '').join('  ·  ');
 }
