@@ -23,6 +23,7 @@ const { metafile } = await build({
   minifySyntax: true,
   minifyWhitespace: true,
   legalComments: 'none',
+  alias: { 'brotli/decompress.js': './.config/no-woff2.mjs' },
   // Some packages are CommonJS and ask for require and __dirname.
   banner: {
     js: "import{createRequire as __createRequire}from'node:module';import{fileURLToPath as __toPath}from'node:url';import{dirname as __dirnameOf}from'node:path';const require=__createRequire(import.meta.url),__filename=__toPath(import.meta.url),__dirname=__dirnameOf(__filename);",

@@ -40,7 +40,7 @@ Examples:
 ${exitCodes}`,
     )
     .action(async (layout: string, options) => {
-      const { check } = await import('./check.ts');
+      const { check } = await import('./all.ts');
       finish(await check(layout, options, io));
     });
 }
@@ -64,7 +64,7 @@ Examples:
 ${exitCodes}`,
     )
     .action(async (layout: string, options) => {
-      const { pump } = await import('./pump.ts');
+      const { pump } = await import('./all.ts');
       finish(await pump(layout, options, io));
     });
 }
@@ -91,7 +91,7 @@ ${exitCodes}
        Ctrl-C while draws are made reports those made so far, marked as such`,
     )
     .action(async (layout: string, options) => {
-      const { spread } = await import('./spread.ts');
+      const { spread } = await import('./all.ts');
       finish(await spread(layout, options, io));
     });
 }
@@ -126,7 +126,7 @@ Examples:
 ${exitCodes}`,
     )
     .action(async (options) => {
-      const { section } = await import('./section.ts');
+      const { section } = await import('./all.ts');
       finish(await section(options, io));
     });
 }
@@ -149,7 +149,7 @@ Examples:
 ${exitCodes}`,
     )
     .action(async (layout: string, options) => {
-      const { draft } = await import('./draft.ts');
+      const { draft } = await import('./all.ts');
       finish(await draft(layout, options, io));
     });
 }

@@ -60,7 +60,6 @@ async function writeWhole(path: string, content: OutFile['content'], io: Io): Pr
       }
       await handle.appendFile(chunk, 'utf8');
     }
-    await handle.sync();
   } finally {
     await handle.close();
   }
