@@ -141,18 +141,37 @@ function defaultDepths({ chip }: FindingContext): Finding[] {
     });
 }
 
-function ignoredShapes({ chip }: FindingContext): Finding[] {
-  const kinds = Object.entries(chip.ignored)
+function ignoredShapes({ chip, network }: FindingContext): Finding[] {
+  const leftOut = leftOutWhole({ chip, network });
+  const counts = {
+    ...chip.ignored,
+    ...(leftOut.length > 0 ? { 'stroke along another': leftOut.length } : {}),
+  };
+  const kinds = Object.entries(counts)
     .filter(([, count]) => count > 0)
     .sort(([a], [b]) => (a < b ? -1 : 1));
   if (kinds.length === 0) return [];
   const total = kinds.reduce((sum, [, count]) => sum + count, 0);
+  const named = leftOut.length === 0 ? '' : ` (${listText(leftOut, 8)})`;
   return [
     toFinding('ignored-shapes', 'note', {
-      message: `${countText(total, 'drawn thing was', 'drawn things were')} not read as part of the chip: ${kinds.map(([kind, count]) => `${count} ${kind}`).join(', ')}`,
+      message: `${countText(total, 'drawn thing was', 'drawn things were')} not read as part of the chip: ${kinds.map(([kind, count]) => `${count} ${kind}${kind === 'stroke along another' ? named : ''}`).join(', ')}`,
       fix: 'check on the picture that no channel is missing',
       at: null,
-      names: [],
+      names: leftOut,
     }),
   ];
+}
+
+/** Strokes that the joining rules left out whole, as an end piece along another channel: drawn, and in no reach. */
+function leftOutWhole({ chip, network }: Pick<FindingContext, 'chip' | 'network'>): string[] {
+  const { near, endFate, firstArc } = network.trace;
+  const kept = new Set<number>();
+  const cut = new Set<number>();
+  for (let c = 0; c < near.pieces.centrelineCount; c++) {
+    const channel = near.pieces.centrelineChannel[c];
+    if (firstArc[c + 1] > firstArc[c]) kept.add(channel);
+    else if (endFate[2 * c] === 'left out' || endFate[2 * c + 1] === 'left out') cut.add(channel);
+  }
+  return [...cut].filter((channel) => !kept.has(channel)).map((channel) => chip.channels[channel].name);
 }
