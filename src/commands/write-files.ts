@@ -1,5 +1,6 @@
 import { randomBytes } from 'node:crypto';
-import { mkdir, open, rename, rm } from 'node:fs/promises';
+import { existsSync } from 'node:fs';
+import { mkdir, open, rename, rm, stat } from 'node:fs/promises';
 import { dirname, join } from 'node:path';
 import { Interrupted, type Io, WriteError } from './io.ts';
 
@@ -18,7 +19,7 @@ export async function writeFiles(folder: string, files: readonly OutFile[], io: 
   const temporary: { readonly from: string; readonly to: string }[] = [];
   let current = folder;
   try {
-    await mkdir(folder, { recursive: true });
+    await makeFolder(folder);
     for (const file of files) {
       const to = join(folder, file.name);
       const from = join(dirname(to), `.${file.name}.${process.pid}.${randomBytes(4).toString('hex')}.tmp`);
@@ -40,6 +41,23 @@ export async function writeFiles(folder: string, files: readonly OutFile[], io: 
     );
   }
   return temporary.map(({ to }) => to);
+}
+
+/**
+ * Makes a folder and those above it that are missing. Node's own recursive mkdir never ends where a file system answers
+ * "no such file" below a folder that is there (as /proc does).
+ */
+async function makeFolder(folder: string): Promise<void> {
+  try {
+    await mkdir(folder);
+  } catch (error) {
+    if (!isSystemError(error)) throw error;
+    if (error.code === 'EEXIST' && (await stat(folder)).isDirectory()) return;
+    const above = dirname(folder);
+    if (error.code !== 'ENOENT' || above === folder || existsSync(above)) throw error;
+    await makeFolder(above);
+    await mkdir(folder);
+  }
 }
 
 const CHUNK_CHARACTERS = 1 << 20;
@@ -74,6 +92,7 @@ const REASONS: Readonly<Record<string, string>> = {
   EPERM: 'not permitted',
   EROFS: 'read-only file system',
   ENOSPC: 'no space left on the disk',
+  ENOENT: 'no folder can be made there',
   ENOTDIR: 'a part of the path is a file',
   EEXIST: 'a file stands where the folder should be',
   EISDIR: 'a folder stands where the file should be',

@@ -207,6 +207,24 @@ describe('a report that cannot be written ends 3 and leaves no half file', () =>
     expect(left).toEqual(['chip.run.yaml', 'chip.svg', 'out']);
   });
 
+  it.skipIf(process.platform !== 'linux')(
+    'where no folder can be made (/proc; skipped off Linux)',
+    async () => {
+      put('chip.svg', CHIP);
+      put('chip.run.yaml', SHEET);
+      const { code, err } = await check('chip.svg', '-o', '/proc/rillcheck');
+      expect(code).toBe(3);
+      expect(err).toContain('no folder can be made there');
+    },
+  );
+
+  it('makes the folders above the one named', async () => {
+    put('chip.svg', CHIP);
+    put('chip.run.yaml', SHEET);
+    expect((await check('chip.svg', '-o', 'a/b/c', '-f', 'csv')).code).toBe(0);
+    expect(readdirSync(join(folder, 'a/b/c'))).toHaveLength(2);
+  });
+
   it('where a folder stands in place of one of the files: none of them is written', async () => {
     put('chip.svg', CHIP);
     put('chip.run.yaml', SHEET);
