@@ -1,9 +1,11 @@
 import type { Chip } from '../chip/types.ts';
 import { findNearPairs } from '../geometry/near.ts';
 import { toPieces } from '../geometry/pieces.ts';
+import type { Bundles } from './bundles.ts';
 import { type Draft, END_FREE, END_IN_PORT, Marks, NodeUnion, pointAt, toEnds } from './draft.ts';
 import { addDuctJoints, type DuctJoints } from './duct-joints.ts';
 import { joinEnds } from './ends.ts';
+import { isEqualDuct } from './equal-ducts.ts';
 import { JointTally } from './joint-types.ts';
 import { markMeetings } from './meetings.ts';
 import { nameNodes, nameReach, nameSegment } from './names.ts';
@@ -44,16 +46,16 @@ export function buildNetwork(chip: Chip): Network {
   });
   markMeetings(draft);
   markWells(draft);
-  joinEnds(draft);
+  const bundles = joinEnds(draft);
   const stops = toStops(draft);
-  const kept = leaveOutEndPieces(draft, stops);
+  const kept = leaveOutEndPieces(draft, stops, bundles);
   const arcs = toArcs(draft, stops, kept);
   const tally = new JointTally();
   const atNodes = classifyNodes(draft, arcs, tally);
   const { trims, strips } = findTrims(draft, stops, kept, atNodes.trimming);
   const reaches = toReaches(draft, arcs, trims);
   const joints = toReachJoints(draft, reaches, atNodes, addDuctJoints(chip, reaches, tally));
-  return toNetwork(draft, stops, kept, arcs, reaches, strips, joints, tally);
+  return toNetwork(draft, bundles, stops, kept, arcs, reaches, strips, joints, tally);
 }
 
 /** Strips nearer than this are of interest to some rule: the join slack, the least wall, or half the depth (slender walls). */
@@ -74,6 +76,7 @@ function nearnessMm(chip: Chip): number {
 
 function toNetwork(
   draft: Draft,
+  bundles: Bundles,
   stops: Stops,
   kept: Kept,
   arcs: Arcs,
@@ -96,7 +99,11 @@ function toNetwork(
   const changes = new Uint8Array(index.count);
   const meet = (node: number, channel: number): void => {
     if (firstDuct[node] < 0) firstDuct[node] = channel;
-    else if (firstDuct[node] !== channel && !isSameDuct(chip, firstDuct[node], channel)) changes[node] = 1;
+    else if (
+      firstDuct[node] !== channel &&
+      !isEqualDuct(chip.channels[firstDuct[node]], chip.channels[channel])
+    )
+      changes[node] = 1;
   };
   for (let r = 0; r < reaches.count; r++) {
     meet(reachFrom[r], reaches.channel[r]);
@@ -196,6 +203,7 @@ function toNetwork(
       endExtensionMm: draft.ends.extension,
       endLeftOutMm: kept.leftOutMm,
       endJoinedTo: draft.ends.joinedTo,
+      endBundle: bundles.of,
       strips,
       ...toPlaces(stops, byNode, index),
     };
@@ -271,12 +279,6 @@ function kindOf(port: number, degree: number, changes: boolean): NodeKind {
   if (port >= 0) return 'port';
   if (degree === 1) return 'end';
   return degree === 2 && changes ? 'step' : 'junction';
-}
-
-function isSameDuct(chip: Chip, a: number, b: number): boolean {
-  const one = chip.channels[a];
-  const two = chip.channels[b];
-  return one.ductWidthMm === two.ductWidthMm && one.depthMm === two.depthMm;
 }
 
 /** A port's node is at its centre, any other where the first arc that comes to it ends. */

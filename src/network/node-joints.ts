@@ -2,6 +2,7 @@ import type { Channel } from '../chip/types.ts';
 import { endsAtVertex, pieceAt } from '../geometry/pieces.ts';
 import { crossK, MITRE_MAX_TURN_RAD, mitreK, stepK, teeEqualK, teeIntoWideK } from '../physics/joints.ts';
 import { type Draft, pointAt } from './draft.ts';
+import { isEqualDuct, isEqualSize } from './equal-ducts.ts';
 import type { JointKind, JointTally } from './joint-types.ts';
 import { type Arcs, sidesByNode } from './reaches.ts';
 
@@ -31,8 +32,6 @@ export const ANGLE_TOLERANCE_RAD = (5 * Math.PI) / 180;
 export const APART_WIDTHS = 1.98;
 /** A dead end of this many widths behaves as closed. */
 const DEAD_END_WIDTHS = 3;
-/** Two drawn widths or depths that differ by less are equal. */
-const EQUAL = 1e-6;
 /**
  * Estimated bound of an end correction that was not computed, in widths of the narrowest duct, while no two arms are nearer
  * than a right angle: no computed one is off centreline counting by more up to W = 10w (a step to 10w: 0.614).
@@ -256,7 +255,7 @@ function twoArms(arms: readonly Arm[]): Computed | null {
     }));
     return { kind: turn <= ANGLE_TOLERANCE_RAD ? null : 'mitred corner', trimming: TRIM_NOTHING, parts };
   }
-  if (!isEqual(one.channel.depthMm, two.channel.depthMm) || turn > ANGLE_TOLERANCE_RAD) return null;
+  if (!isEqualSize(one.channel.depthMm, two.channel.depthMm) || turn > ANGLE_TOLERANCE_RAD) return null;
   const [narrow, wide] = one.channel.ductWidthMm <= two.channel.ductWidthMm ? [one, two] : [two, one];
   const width = narrow.channel.ductWidthMm;
   const { k, error } = stepK(width / narrow.channel.depthMm, wide.channel.ductWidthMm / width);
@@ -270,8 +269,8 @@ function twoArms(arms: readonly Arm[]): Computed | null {
 /** A T: a main straight through and a side at right angles, no wider than the main. */
 function threeArms(arms: readonly Arm[]): Computed | null {
   const [mainA, mainB, side] = asTee(arms);
-  if (!arms.every(({ channel }) => isEqual(channel.depthMm, arms[0].channel.depthMm))) return null;
-  if (!isEqual(mainA.channel.ductWidthMm, mainB.channel.ductWidthMm)) return null;
+  if (!arms.every(({ channel }) => isEqualSize(channel.depthMm, arms[0].channel.depthMm))) return null;
+  if (!isEqualSize(mainA.channel.ductWidthMm, mainB.channel.ductWidthMm)) return null;
   if (Math.PI - angleBetween(mainA, mainB) > ANGLE_TOLERANCE_RAD) return null;
   for (const main of [mainA, mainB]) {
     if (Math.abs(angleBetween(main, side) - Math.PI / 2) > ANGLE_TOLERANCE_RAD) return null;
@@ -279,7 +278,7 @@ function threeArms(arms: readonly Arm[]): Computed | null {
   const width = side.channel.ductWidthMm;
   const mainWidth = mainA.channel.ductWidthMm;
   const aspect = width / side.channel.depthMm;
-  if (isEqual(width, mainWidth)) {
+  if (isEqualSize(width, mainWidth)) {
     const { main, side: k, error } = teeEqualK(aspect);
     return {
       kind: 'T of equal ducts',
@@ -336,14 +335,6 @@ function fourArms(arms: readonly Arm[]): Computed | null {
 
 function angleBetween(a: Arm, b: Arm): number {
   return Math.atan2(Math.abs(a.dx * b.dy - a.dy * b.dx), a.dx * b.dx + a.dy * b.dy);
-}
-
-function isEqual(a: number, b: number): boolean {
-  return Math.abs(a - b) <= EQUAL * Math.max(a, b);
-}
-
-function isEqualDuct(a: Channel, b: Channel): boolean {
-  return isEqual(a.ductWidthMm, b.ductWidthMm) && isEqual(a.depthMm, b.depthMm);
 }
 
 /** How far each arm runs straight on before the next joint. */
