@@ -29,7 +29,7 @@ export function madeUpNames({ channels, ports }: Pick<Chip, 'channels' | 'ports'
 /** By a chip's list of channels, for a chip with as many entries as reaches asks as often. */
 const known = new WeakMap<Chip['channels'], ReadonlySet<string>>();
 
-/** A reach of a channel of several is named for it: `lane/2`. */
+/** A reach of a channel of several is named for it: `lane:2`. */
 function channelOf(name: string): string {
-  return name.replace(/\/\d+$/, '');
+  return name.replace(/:\d+$/, '');
 }

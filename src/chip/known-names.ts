@@ -107,7 +107,7 @@ export function refuseUnknownNames(
 
 /** A reach is named for its channel, with a number where the channel has several. */
 function isReachOf(channels: ReadonlySet<string>, asked: string): boolean {
-  const channel = asked.replace(/\/[\d*]*$/, '');
+  const channel = asked.replace(/:[\d*]*$/, '');
   if (channels.has(asked) || channels.has(channel)) return true;
   return isPattern(asked) && [...channels].some((name) => matches(asked, name) || matches(channel, name));
 }

@@ -126,7 +126,7 @@ function fixText(lanes: readonly Lane[], worst: Lane, even: number, times: numbe
     return `make the channels alike in length, width and depth: ${odd.name} resists ${formatNumber(odd.resistance / mean)} times the mean of them all${also}; or give each the length that makes up for what feeds it`;
   }
   if (times === null)
-    return `the channels are alike, but what feeds and drains them is not: lead to ${worst.name} ways as long and wide as to the others`;
+    return `the channels are alike, but what drives them is not: give each the same flow or pressure, or lead ways of one length and width to all of them from one supply (${worst.name} differs most)`;
   const ratio = roundedUp(times);
   return `the channels are alike, but the headers and feeders between them take unlike pressures: bring the resistance of those to 1/${formatNumber(ratio)} of what it is (about ${formatNumber(ratio)} times as wide where they are flat, or ${formatNumber(roundedUp(Math.cbrt(times)))} times as deep), or that of the channels to ${formatNumber(ratio)} times; or lead ways of equal length to all of them`;
 }

@@ -431,7 +431,7 @@ const target = changed(
   keys(
     {
       channel: v.optional(text('The channel to be set.', 'lane-1')),
-      reach: v.optional(text('Which reach, for a channel of several.', 'lane-1/2')),
+      reach: v.optional(text('Which reach, for a channel of several.', 'lane-1:2')),
       port: v.optional(text('The port to be set.', 'waste')),
       node: v.optional(text('The node to be set.', 'junction-1')),
       flow: v.optional(

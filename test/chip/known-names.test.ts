@@ -145,7 +145,7 @@ describe('a name that the drawing lacks', () => {
   it('may stand under channels for a chamber, and a switch may ask for a reach of several', () => {
     const shapes = [...drafts, filled('chamber', rectangle(30, 0, 4, 4))];
     const sheet =
-      'depth: 50 um\nfields: [chamber]\nchannels: { chamber: { wall_shear: { max: 1 Pa } } }\nswitch: { reach: lane-1/2 }';
+      'depth: 50 um\nfields: [chamber]\nchannels: { chamber: { wall_shear: { max: 1 Pa } } }\nswitch: { reach: "lane-1:2" }';
     const chip = chipOf(shapes, sheet);
     expect(chip.faults).toEqual([]);
     expect(chip.ignored).toMatchObject({ 'chamber or pillar': 1 });

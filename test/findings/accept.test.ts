@@ -112,9 +112,9 @@ describe('acceptFindings', () => {
       const entries = [entry({ rule: 'open-end', at: 'channel-*', upTo: null })];
       return acceptFindings([one], [], entries, RULES, SHOW, new Set(['channel-3']))[0].accepted;
     };
-    expect(at(['channel-3', 'channel-3/2'])).toBeNull();
+    expect(at(['channel-3', 'channel-3:2'])).toBeNull();
     expect(at(['channel-4'])).not.toBeNull();
-    expect(at(['channel-4/1'])).not.toBeNull();
+    expect(at(['channel-4:1'])).not.toBeNull();
   });
 
   it('tries every entry that matches, as trying them one by one does', () => {
