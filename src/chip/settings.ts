@@ -32,10 +32,11 @@ export function settingsFinder<T>(
   const patterns: { readonly pattern: string; readonly entry: T }[] = [];
   for (const [name, entry] of Object.entries(entries)) {
     if (isPattern(name)) patterns.push({ pattern: name, entry });
-    else exact.set(name.trim(), entry);
+    // a drawing may name something with a star: the key that is this very name goes before all others
+    exact.set(isPattern(name) ? name : name.trim(), entry);
   }
   patterns.sort((a, b) => b.pattern.length - a.pattern.length);
-  const waitingNames = new Set(exact.keys());
+  const waitingNames = new Set([...exact.keys()].filter((name) => !isPattern(name)));
   const waitingPatterns = new Set(patterns.map(({ pattern }) => pattern));
   const ruling = new Set<string>();
   const known = new Map<string, T | null>();
@@ -45,7 +46,10 @@ export function settingsFinder<T>(
     for (const pattern of waitingPatterns) if (matches(pattern, drawnName)) waitingPatterns.delete(pattern);
     waitingNames.delete(drawnName);
     const own = exact.get(drawnName);
-    if (own !== undefined) return own;
+    if (own !== undefined) {
+      if (isPattern(drawnName)) ruling.add(drawnName);
+      return own;
+    }
     const first = patterns.findIndex(({ pattern }) => matches(pattern, drawnName));
     if (first < 0) return null;
     const best = patterns[first]!;

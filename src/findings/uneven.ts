@@ -1,3 +1,4 @@
+import type { Chip } from '../chip/types.ts';
 import { isPattern, matches } from '../runsheet/names.ts';
 import { formatNumber, formatShare } from '../runsheet/shown.ts';
 import { drivesOf } from '../solve/drives.ts';
@@ -35,7 +36,7 @@ function unevenFlow(context: FindingContext): RuleOutcome {
   const findings: Finding[] = [];
   const whys: string[] = [];
   for (const { key, even } of asked) {
-    const members = membersOf(context, key);
+    const members = membersOf(chip, key);
     const lanes = members.flatMap((channel) => laneOf(context, channel) ?? []);
     const unknown = members.length - lanes.length;
     if (members.length < 2) whys.push(`${key} is one channel, which has nothing to be even with`);
@@ -51,9 +52,9 @@ function unevenFlow(context: FindingContext): RuleOutcome {
 }
 
 /** Every channel whose drawn name matches, whatever other entry it has. */
-function membersOf({ chip }: FindingContext, key: string): number[] {
+export function membersOf({ channels }: Pick<Chip, 'channels'>, key: string): number[] {
   const name = key.trim();
-  return chip.channels.flatMap(({ drawnName }, channel) => {
+  return channels.flatMap(({ drawnName }, channel) => {
     if (drawnName === null) return [];
     return (isPattern(key) ? matches(key, drawnName) : drawnName === name) ? [channel] : [];
   });

@@ -21,6 +21,13 @@ describe('settingsFinder', () => {
   const sheets = fc.uniqueArray(letters(['a', 'b', '*'], 1, 5), { maxLength: 6 });
   const names = fc.array(letters(['a', 'b'], 1, 6), { minLength: 1, maxLength: 12 });
 
+  it('lets the key that is the very name go before all patterns, also where that name has a star', () => {
+    const entries = { '*a': 1, 'a*': 2, '**': 3 };
+    const finder = settingsFinder(null, 'ports', entries);
+    expect(['*a', 'a*', '**'].map(finder.of)).toEqual([1, 2, 3]);
+    expect(finder.overruled()).toEqual([]);
+  });
+
   it.each(['ports', 'channels'] as const)(
     'takes of random %s the exact name, else the longest pattern, and stops at a tie, as trying them all does',
     (section) => {
