@@ -4,7 +4,6 @@ import type { Hole } from '../layout/types.ts';
 import { layerKey } from '../runsheet/names.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { RunSheet } from '../runsheet/types.ts';
-import type { Tally } from './select.ts';
 import type { Port } from './types.ts';
 import { UniqueNames } from './unique-names.ts';
 
@@ -13,6 +12,8 @@ export interface PortReading {
   readonly ports: readonly Port[];
   /** Circles that are no ports because of their size; filled ones may be drawn-out channels. */
   readonly unsuitable: readonly Hole[];
+  /** Circles outside the ports layer. */
+  readonly outside: readonly Hole[];
   readonly drawnNames: ReadonlySet<string>;
   readonly isMade: (name: string) => boolean;
 }
@@ -28,19 +29,19 @@ export function readPorts(
   sheet: RunSheet | null,
   diameterM: readonly [number, number],
   file: string,
-  ignored: Tally,
   setAside: Map<string, string>,
 ): PortReading {
   const layer = sheet?.portsLayer == null ? null : layerKey(sheet.portsLayer);
   const suitable: Hole[] = [];
   const unsuitable: Hole[] = [];
+  const outside: Hole[] = [];
   const note = (hole: Hole, why: string): void => {
     if (hole.name !== null && !setAside.has(hole.name)) setAside.set(hole.name, why);
   };
   for (const hole of holes) {
     const diameterMm = 2 * hole.radius * unitMm;
     if (layer !== null && !hole.groups.some((group) => layerKey(group) === layer)) {
-      ignored.add('circle outside the ports layer');
+      outside.push(hole);
       note(hole, 'it is not in the ports layer');
     } else if (
       diameterMm < diameterM[0] * 1000 * (1 - SLACK) ||
@@ -77,7 +78,7 @@ export function readPorts(
       expect: entry?.expect ?? null,
     };
   });
-  return { ports, unsuitable, drawnNames, isMade: (name) => names.isMade(name) };
+  return { ports, unsuitable, outside, drawnNames, isMade: (name) => names.isMade(name) };
 }
 
 const SLACK = 1e-6;

@@ -1,3 +1,4 @@
+import { OBSTACLE_KIND } from '../chip/defaults.ts';
 import type { ReadingFault } from '../chip/types.ts';
 import { UNUSABLE_KEYS } from '../runsheet/names.ts';
 import { middleOfChannel } from './centrelines.ts';
@@ -10,14 +11,12 @@ import { countText, distanceText, keyText, listText } from './words.ts';
 export const readingRules: readonly Rule[] = [
   {
     names: ['unsized-stroke'],
+    withoutChannels: true,
     run: ({ chip }) => found(chip.faults.filter(isOf('unsized-stroke')).map(unsizedStroke)),
   },
   {
-    names: ['filled-outline'],
-    run: ({ chip }) => found(chip.faults.filter(isOf('filled-outline')).map(filledOutline)),
-  },
-  {
     names: ['assumed-scale'],
+    withoutChannels: true,
     run: ({ chip }) => found(chip.faults.filter(isOf('assumed-scale')).map(assumedScale)),
   },
   {
@@ -30,7 +29,7 @@ export const readingRules: readonly Rule[] = [
   },
   { names: ['unset-port'], run: (context) => found(unsetPorts(context)) },
   { names: ['default-depth'], run: (context) => found(defaultDepths(context)) },
-  { names: ['ignored-shapes'], run: (context) => found(ignoredShapes(context)) },
+  { names: ['ignored-shapes'], withoutChannels: true, run: (context) => found(ignoredShapes(context)) },
 ];
 
 type FaultOf<K extends ReadingFault['kind']> = Extract<ReadingFault, { readonly kind: K }>;
@@ -43,16 +42,6 @@ function unsizedStroke({ name, xMm, yMm }: FaultOf<'unsized-stroke'>): Finding {
   return toFinding('unsized-stroke', 'blocker', {
     message: `the stroke of ${name} is stretched or skewed by its transform, so it has no one width; the channel was left out`,
     fix: `take the uneven scaling off ${name} or its group (apply the transform to the path) and set its stroke width again`,
-    at: { xMm, yMm },
-    names: [name],
-  });
-}
-
-function filledOutline({ name, xMm, yMm, stroked }: FaultOf<'filled-outline'>): Finding {
-  const why = stroked ? 'stroked too' : 'a channel ends on it';
-  return toFinding('filled-outline', 'blocker', {
-    message: `${name} is drawn as a filled outline (${why}); only strokes along a centreline are channels, so it was left out`,
-    fix: `redraw ${name} as one line along its middle with its width as the stroke width, or name it under ignore: in the run sheet if it is no channel`,
     at: { xMm, yMm },
     names: [name],
   });
@@ -143,8 +132,9 @@ function defaultDepths({ chip }: FindingContext): Finding[] {
 
 function ignoredShapes({ chip, network }: FindingContext): Finding[] {
   const leftOut = leftOutWhole({ chip, network });
+  const { [OBSTACLE_KIND]: _, ...ignored } = chip.ignored;
   const counts = {
-    ...chip.ignored,
+    ...ignored,
     ...(leftOut.length > 0 ? { 'stroke along another': leftOut.length } : {}),
   };
   const kinds = Object.entries(counts)

@@ -4,6 +4,8 @@ import { endRules } from './ends.ts';
 import { flowRules } from './flow.ts';
 import { levelRules } from './level-sensitive.ts';
 import { networkRules } from './network.ts';
+import { obstacleRules } from './obstacles.ts';
+import { outlineRules } from './outlines.ts';
 import { portRules } from './ports.ts';
 import { pressureRules } from './pressure.ts';
 import { pumpRules } from './pump-limit.ts';
@@ -18,6 +20,8 @@ import { windowRules } from './windows.ts';
 /** Every rule, family by family. A new family is one file and one line here. */
 export const RULES: readonly Rule[] = [
   ...readingRules,
+  ...outlineRules,
+  ...obstacleRules,
   ...wallRules,
   ...strokeRules,
   ...endRules,

@@ -1,3 +1,4 @@
+import { withoutEscapes } from '../escaped-names.ts';
 import { attribute, prefixedAttribute, type XmlElement } from './tree.ts';
 import { ValueError } from './value-error.ts';
 
@@ -5,7 +6,8 @@ import { ValueError } from './value-error.ts';
 export const MAX_NAME = 1000;
 
 /**
- * The drawn name: `data-name`, a vector editor's label (any `*:label`), a child `title`, `id`; trimmed; else null.
+ * The drawn name: `data-name`, a vector editor's label (any `*:label`), a child `title`, `id`; trimmed, with an editor's
+ * escapes read; else null.
  * @throws ValueError for one longer than MAX_NAME.
  */
 export function drawnName(element: XmlElement): string | null {
@@ -18,6 +20,12 @@ export function drawnName(element: XmlElement): string | null {
 
 /** The drawn name of whatever length, to say which element is meant. */
 export function nameAsDrawn(element: XmlElement): string | null {
+  const written = nameAsWritten(element);
+  return written === null ? null : withoutEscapes(written);
+}
+
+/** The same with an editor's escapes as they stand in the file. */
+export function nameAsWritten(element: XmlElement): string | null {
   const title = element.children.find((child) => child.name === 'title' && child.isSvg);
   return (
     nonEmpty(attribute(element, 'data-name')) ??

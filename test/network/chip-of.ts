@@ -40,6 +40,8 @@ export function chipOf(channels: readonly ChannelSpec[], ports: readonly PortSpe
     ports: ports.map(toPort),
     edge: null,
     sizeMm: null,
+    obstacles: [],
+    unreadLines: [],
     ignored: {},
     faults: [],
     fluid: {
@@ -93,6 +95,7 @@ function toChannel(spec: ChannelSpec, ordinal: number, depths: readonly string[]
       bendRadius: new Float64Array(line.length / 2 - 1),
     })),
     disguises: [],
+    dataChannel: false,
     settings: null,
   };
 }

@@ -197,6 +197,7 @@ function sampleChip(names: SampleNames, { show = {}, bare = false }: SampleOptio
       },
     ],
     disguises: [],
+    dataChannel: false,
     settings,
   });
   const tubing: TubingPiece[] = [{ boreM: 0.5e-3, lengthM: 0.3, temperatureK: null }];
@@ -248,6 +249,8 @@ function sampleChip(names: SampleNames, { show = {}, bare = false }: SampleOptio
       sidesMm: [76, 26],
     },
     sizeMm: bare ? null : [76, 26],
+    obstacles: [],
+    unreadLines: [],
     ignored: { text: 3, 'dashed stroke': 1 },
     faults: [],
     fluid,
