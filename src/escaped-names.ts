@@ -9,6 +9,7 @@ export function withoutEscapes(name: string): string {
     before = text;
     text = text.replace(ESCAPE, (whole, hex: string) => characterOf(Number.parseInt(hex, 16)) ?? whole);
   }
+  if (text === name) return name;
   const trimmed = text.trim();
   // A name of nothing but escaped spaces stays as it is written: no name may be empty.
   return trimmed === '' ? name : trimmed;

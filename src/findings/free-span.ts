@@ -127,12 +127,16 @@ function indexPillars(pillars: readonly Obstacle[]): Distances {
   index.finish();
   return {
     distance: (x, y, within) => {
-      let nearest = edges.distance(x, y, within);
-      for (const i of index.search(x - within, y - within, x + within, y + within)) {
-        const { xMm, yMm, radiusMm } = circles[i];
-        nearest = Math.min(nearest, Math.hypot(x - xMm, y - yMm) - radiusMm);
+      const least = edges.distance(x, y, within);
+      // Most pillars are near: a window that grows finds the nearest without looking at all within.
+      for (let reach = within / 16; ; reach = Math.min(within, 2 * reach)) {
+        let nearest = least;
+        for (const i of index.search(x - reach, y - reach, x + reach, y + reach)) {
+          const { xMm, yMm, radiusMm } = circles[i];
+          nearest = Math.min(nearest, Math.hypot(x - xMm, y - yMm) - radiusMm);
+        }
+        if (nearest <= reach || reach >= within) return nearest;
       }
-      return nearest;
     },
   };
 }

@@ -74,8 +74,10 @@ function allOutlines(outlines: readonly OutlineFault[]): Finding {
     shapes === 0 ? '' : countText(shapes, 'filled shape'),
     lines === 0 ? '' : countText(lines, 'hairline round an area', 'hairlines round areas'),
   ].filter((text) => text !== '');
+  const names = namesOf(outlines);
+  const named = names.length === 0 ? '' : `: ${listText(names, 8)}`;
   return toFinding('filled-outline', 'blocker', {
-    message: `the drawing shows its channels as outlines (${what.join(' and ')}: ${namesText(outlines)}) and has no centreline: nothing could be computed`,
+    message: `the drawing shows its channels as outlines (${what.join(' and ')}${named}) and has no centreline: nothing could be computed`,
     fix: `draw the centrelines: each channel as one line along its middle, with its width as the stroke width and no fill; name what is no channel under ignore: in the run sheet, and the outline of the part chip-edge`,
     ...placeOf(outlines),
   });
@@ -131,10 +133,18 @@ function holdText(outlines: readonly OutlineFault[]): string {
   return ports.length === 0 ? 'other such lines' : listText(ports);
 }
 
-/** As many names as can be read; a made-up one stands for all that have none. */
+/** As many names as can be read, and how many have none. */
 function namesText(outlines: readonly OutlineFault[]): string {
-  const named = [...new Set(outlines.map(({ name }) => name))];
-  return listText(named, 8);
+  const unnamed = outlines.filter(({ name }) => name.startsWith('unnamed ')).length;
+  const named = namesOf(outlines);
+  if (named.length === 0) return unnamed === 1 ? outlines[0].name : `${unnamed} unnamed shapes`;
+  return listText(unnamed === 0 ? named : [...named, countText(unnamed, 'unnamed shape')], 8);
+}
+
+/** Without what was made up for shapes that have no name, unless there is no other. */
+function namesOf(outlines: readonly OutlineFault[]): string[] {
+  const named = outlines.filter(({ name }) => !name.startsWith('unnamed ')).map(({ name }) => name);
+  return [...new Set(named)];
 }
 
 function placeOf(outlines: readonly OutlineFault[]): {
@@ -142,7 +152,7 @@ function placeOf(outlines: readonly OutlineFault[]): {
   readonly names: readonly string[];
 } {
   const [{ xMm, yMm }] = outlines;
-  return { at: { xMm, yMm }, names: [...new Set(outlines.map(({ name }) => name))] };
+  return { at: { xMm, yMm }, names: namesOf(outlines) };
 }
 
 /** A drawing without channels, or anything that might be one, would otherwise have no fault at all. */

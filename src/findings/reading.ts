@@ -1,5 +1,6 @@
 import { OBSTACLE_KIND } from '../chip/defaults.ts';
-import type { ReadingFault } from '../chip/types.ts';
+import { sizesByPixel } from '../chip/pixel-sizes.ts';
+import type { Chip, ReadingFault } from '../chip/types.ts';
 import { UNUSABLE_KEYS } from '../runsheet/names.ts';
 import { middleOfChannel } from './centrelines.ts';
 import type { FindingContext } from './context.ts';
@@ -17,7 +18,8 @@ export const readingRules: readonly Rule[] = [
   {
     names: ['assumed-scale'],
     withoutChannels: true,
-    run: ({ chip }) => found(chip.faults.filter(isOf('assumed-scale')).map(assumedScale)),
+    run: ({ chip }) =>
+      found(chip.faults.filter(isOf('assumed-scale')).map((fault) => assumedScale(fault, chip))),
   },
   {
     names: ['missing-depth'],
@@ -47,10 +49,10 @@ function unsizedStroke({ name, xMm, yMm }: FaultOf<'unsized-stroke'>): Finding {
   });
 }
 
-function assumedScale({ reason }: FaultOf<'assumed-scale'>): Finding {
+function assumedScale({ reason }: FaultOf<'assumed-scale'>, chip: Chip): Finding {
   return toFinding('assumed-scale', 'blocker', {
-    message: `the drawing states no physical size (${reason}); it was read at 25.4/96 mm a unit, which is a guess`,
-    fix: 'give the drawing its width and height in mm, or write in the run sheet unit: 1 mm (what one drawing unit is) or size: [76 mm, 26 mm] (the sides of the chip edge)',
+    message: `the drawing states no physical size (${reason}); it was read at 96 pixels per inch, which is a guess: ${sizesByPixel(chip)}`,
+    fix: 'give the drawing its width and height in mm, or write in the run sheet unit: 1 mm (what one drawing unit is: one of the two above, or 1 mm where it was drawn in mm) or size: [76 mm, 26 mm] (the sides of the chip edge)',
     at: null,
     names: [],
   });

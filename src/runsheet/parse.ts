@@ -1,6 +1,7 @@
 import { createHash } from 'node:crypto';
 import * as v from 'valibot';
 import { InputError } from '../errors.ts';
+import { withDecodedNames } from './decoded-names.ts';
 import { mergeCase } from './merge.ts';
 import { isPattern, layerKey } from './names.ts';
 import { type KeyPath, pathText } from './path-text.ts';
@@ -30,7 +31,7 @@ import type {
  */
 export function parseRunSheet(text: string, file: string): RunSheet {
   const source: Source = { file, text, sha256: createHash('sha256').update(text, 'utf8').digest('hex') };
-  const root = withoutEmpty(parseTree(text, file));
+  const root = withDecodedNames(withoutEmpty(parseTree(text, file)), file);
   const sheet = toRunSheet(validate(sheetSchema, root, file, []), root, source, []);
   return { ...sheet, cases: parseCases(root, source) };
 }
