@@ -5,6 +5,7 @@
  * if they were channels, or passed over, they would give a wrong network without a word.
  */
 import Flatbush from 'flatbush';
+import { addDiscStretch, coveredUpTo } from '../geometry/strip.ts';
 import type { Hole, Ignored, Outline } from '../layout/types.ts';
 import { findHairlines } from './hairlines.ts';
 import { circleRing, indexRings, outerRings, type RingIndex } from './rings.ts';
@@ -37,7 +38,7 @@ export interface AreaReading {
  * obstacle there. One that holds every channel and port is background.
  *
  * An end touches a shape when the shape's edge is within half the channel's width of it, or when it lies inside. An end in a
- * well touches nothing that lies inside that well: drawn decoration of a port.
+ * well is the port's, and touches no shape; a shape that lies in a well is decoration of the port.
  * Cost: n log n in the corners of shapes and channels.
  */
 export function readAreas(
@@ -66,11 +67,11 @@ export function readAreas(
       ends: [],
     }),
   );
-  const wellsAt = wellFinder(ports, slackMm);
-  const shapes = toShapes(areas, unitMm, wellsAt);
+  const wells = indexWells(ports, slackMm);
+  const shapes = toShapes(areas, unitMm, wells);
   if (shapes.length === 0) return { faults, obstacles: [], channels, counted: [] };
 
-  const touching = touchedShapes(shapes, channels, ports, wellsAt, slackMm);
+  const touching = touchedShapes(shapes, channels, ports, wells, slackMm);
   const strips = channels.length === 0 ? null : indexStrips(channels, slackMm);
   const isBackground = backgroundTest(channels, ports, slackMm);
   const obstacles: Obstacle[] = [];
@@ -93,7 +94,7 @@ export function readAreas(
     if (inWell) return 'counted';
     if (strips === null) return shape.mayBeChannel ? { kind: 'fault', reason: 'no-channels' } : 'counted';
     if (isBackground(shape)) return 'counted';
-    const within = whereInStrips(shape, strips, channels);
+    const within = whereInStrips(shape, strips, channels, wells, slackMm);
     if (within?.inside === true && !shape.isPad) return toObstacle(shape, within);
     if (!shape.filled) return 'counted';
     if (shape.stroked && shape.mayBeChannel) return { kind: 'fault', reason: 'stroked' };
@@ -128,7 +129,7 @@ interface Shape {
 function toShapes(
   { outlines, unsuitable, outside, ellipses }: DrawnAreas,
   unitMm: number,
-  wellsAt: WellsAt,
+  wells: Wells,
 ): Shape[] {
   const toMm = (ring: Float64Array): Float64Array => ring.map((value) => value * unitMm);
   const shapes: Shape[] = outlines.map((outline) => ({
@@ -160,9 +161,9 @@ function toShapes(
   for (const circle of unsuitable) shapes.push(circleShape(circle, unitMm, 'circle of no port size'));
   for (const circle of outside) {
     const shape = circleShape(circle, unitMm, 'circle outside the ports layer');
-    const isPad = wellsAt(circle.x * unitMm, circle.y * unitMm).some((port) =>
-      isConcentric(circle, unitMm, port),
-    );
+    const isPad = wells
+      .at(circle.x * unitMm, circle.y * unitMm)
+      .some((port) => isConcentric(circle, unitMm, port));
     shapes.push({ ...shape, mayBeChannel: false, isPad });
   }
   return shapes.sort((a, b) => a.ordinal - b.ordinal);
@@ -201,21 +202,19 @@ function touchedShapes(
   shapes: readonly Shape[],
   channels: readonly Channel[],
   ports: readonly Port[],
-  wellsAt: WellsAt,
+  wells: Wells,
   slackMm: number,
 ): readonly Touch[] {
   const touching: Touch[] = shapes.map(({ rings, circle }) => {
     const [x, y] = circle === null ? [rings[0]?.[0] ?? 0, rings[0]?.[1] ?? 0] : [circle.xMm, circle.yMm];
-    const inWell = wellsAt(x, y).some((port) => isInsideWell(rings, port, slackMm));
+    const inWell = wells.at(x, y).some((port) => isInsideWell(rings, port, slackMm));
     return { ends: [], ports: [], inWell };
   });
   const index = indexRings(shapes.map(({ rings }) => rings));
   const touchAt = ({ name, stripHalfWidthMm }: Channel, x: number, y: number): void => {
-    const wells = wellsAt(x, y);
+    if (wells.at(x, y).length > 0) return;
     const near = index.groupsWithin(x, y, stripHalfWidthMm + slackMm);
-    const round = wells.length > 0 ? [] : index.groupsRound(x, y);
-    for (const shape of new Set([...near, ...round])) {
-      if (wells.some((port) => isInsideWell(shapes[shape].rings, port, slackMm))) continue;
+    for (const shape of new Set([...near, ...index.groupsRound(x, y)])) {
       touching[shape].ends.push({ channel: name, xMm: x, yMm: y });
     }
   };
@@ -235,21 +234,30 @@ function touchedShapes(
   return touching;
 }
 
-type WellsAt = (x: number, y: number) => readonly Port[];
+interface Wells {
+  /** Ports whose well holds the point. */
+  readonly at: (x: number, y: number) => readonly Port[];
+  /** Ports whose well may meet the line. */
+  readonly along: (x1: number, y1: number, x2: number, y2: number) => readonly Port[];
+}
 
-function wellFinder(ports: readonly Port[], slackMm: number): WellsAt {
-  if (ports.length === 0) return () => [];
+function indexWells(ports: readonly Port[], slackMm: number): Wells {
+  if (ports.length === 0) return { at: () => [], along: () => [] };
   const index = new Flatbush(ports.length);
   for (const { xMm, yMm, radiusMm } of ports) {
     const r = radiusMm + slackMm;
     index.add(xMm - r, yMm - r, xMm + r, yMm + r);
   }
   index.finish();
-  return (x, y) =>
-    index
-      .search(x, y, x, y)
-      .map((i) => ports[i]!)
-      .filter(({ xMm, yMm, radiusMm }) => Math.hypot(x - xMm, y - yMm) <= radiusMm + slackMm);
+  const along: Wells['along'] = (x1, y1, x2, y2) =>
+    index.search(Math.min(x1, x2), Math.min(y1, y2), Math.max(x1, x2), Math.max(y1, y2)).map((i) => ports[i]);
+  return {
+    at: (x, y) =>
+      along(x, y, x, y).filter(
+        ({ xMm, yMm, radiusMm }) => Math.hypot(x - xMm, y - yMm) <= radiusMm + slackMm,
+      ),
+    along,
+  };
 }
 
 function isInsideWell(
@@ -314,33 +322,38 @@ function boxHolds(
 interface Place {
   /** Index of the channel. */
   readonly channel: number;
-  /** All of the shape lies in the etched area; else it lies across a wall of it. */
+  /** All of the shape lies in the etched area and the wells; else it lies across a wall of it. */
   readonly inside: boolean;
 }
 
 /** Where in the etched area a shape lies; null when it lies in none. */
-function whereInStrips(shape: Shape, strips: StripIndex, channels: readonly Channel[]): Place | null {
+function whereInStrips(
+  shape: Shape,
+  strips: StripIndex,
+  channels: readonly Channel[],
+  wells: Wells,
+  slackMm: number,
+): Place | null {
   const { circle, rings } = shape;
   if (circle !== null) {
     const round = strips.channelsRoundDisc(circle.xMm, circle.yMm, circle.radiusMm);
     if (round.length > 0) return { channel: widestOf(round), inside: true };
   }
-  /** Corners of the shape in each channel. */
-  const corners = new Map<number, number>();
-  let count = 0;
-  let inside = 0;
-  for (const ring of rings) {
-    for (let i = 0; i + 3 < ring.length; i += 2) {
-      count++;
-      const here = strips.channelsAt(ring[i], ring[i + 1]);
-      if (here.length > 0) inside++;
-      for (const channel of here) corners.set(channel, (corners.get(channel) ?? 0) + 1);
+  if (isAllEtched(rings, strips, wells, slackMm)) {
+    /** Corners of the shape in each channel. */
+    const corners = new Map<number, number>();
+    for (const ring of rings) {
+      for (let i = 0; i + 3 < ring.length; i += 2) {
+        for (const channel of strips.channelsAt(ring[i], ring[i + 1])) {
+          corners.set(channel, (corners.get(channel) ?? 0) + 1);
+        }
+      }
     }
-  }
-  if (count > 0 && inside === count) {
-    const most = Math.max(...corners.values());
-    const best = [...corners].filter(([, held]) => held === most).map(([channel]) => channel);
-    return { channel: widestOf(best), inside: true };
+    if (corners.size > 0) {
+      const most = Math.max(...corners.values());
+      const best = [...corners].filter(([, held]) => held === most).map(([channel]) => channel);
+      return { channel: widestOf(best), inside: true };
+    }
   }
   const met = new Set<number>();
   for (const ring of rings) {
@@ -356,6 +369,61 @@ function whereInStrips(shape: Shape, strips: StripIndex, channels: readonly Chan
       channels[one].stripHalfWidthMm > channels[best].stripHalfWidthMm ? one : best,
     );
   }
+}
+
+/** Looked at in each direction across a shape for material within. */
+const LOOKS = 6;
+
+/** Whether the edges of a shape, and what lies between them, are all in strips and wells. */
+function isAllEtched(
+  rings: readonly Float64Array[],
+  strips: StripIndex,
+  wells: Wells,
+  slackMm: number,
+): boolean {
+  let [left, top, right, bottom] = [Infinity, Infinity, -Infinity, -Infinity];
+  for (const ring of rings) {
+    for (let i = 0; i < ring.length; i += 2) {
+      if (i > 0 && !isEdgeEtched(ring[i - 2], ring[i - 1], ring[i], ring[i + 1], strips, wells, slackMm)) {
+        return false;
+      }
+      left = Math.min(left, ring[i]);
+      right = Math.max(right, ring[i]);
+      top = Math.min(top, ring[i + 1]);
+      bottom = Math.max(bottom, ring[i + 1]);
+    }
+  }
+  // Edges along a loop of channels may enclose the material that it goes round.
+  const area = indexRings([rings]);
+  for (let i = 0; i < LOOKS; i++) {
+    for (let k = 0; k < LOOKS; k++) {
+      const x = left + ((i + 0.5) / LOOKS) * (right - left);
+      const y = top + ((k + 0.5) / LOOKS) * (bottom - top);
+      if (!area.contains(x, y)) continue;
+      if (strips.channelsAt(x, y).length === 0 && wells.at(x, y).length === 0) return false;
+    }
+  }
+  return true;
+}
+
+function isEdgeEtched(
+  x1: number,
+  y1: number,
+  x2: number,
+  y2: number,
+  strips: StripIndex,
+  wells: Wells,
+  slackMm: number,
+): boolean {
+  const span = Math.hypot(x2 - x1, y2 - y1);
+  if (span === 0) return true;
+  const stretches: number[] = [];
+  strips.addStretches(stretches, x1, y1, x2, y2);
+  for (const { xMm, yMm, radiusMm } of wells.along(x1, y1, x2, y2)) {
+    const [dx, dy] = [(x2 - x1) / span, (y2 - y1) / span];
+    addDiscStretch(stretches, xMm, yMm, radiusMm + slackMm, x1, y1, dx, dy, span);
+  }
+  return coveredUpTo(stretches, 0, slackMm) >= span - slackMm;
 }
 
 function toObstacle({ name, ordinal, rings, circle }: Shape, { channel, inside }: Place): Judgement {

@@ -1,7 +1,7 @@
 import Flatbush from 'flatbush';
 import { toPieces } from '../geometry/pieces.ts';
 import { segmentDistance } from '../geometry/segment.ts';
-import { isInPieceStrip } from '../geometry/strip.ts';
+import { addStripStretches, isInPieceStrip } from '../geometry/strip.ts';
 import type { Channel } from './types.ts';
 
 /** Questions about the etched areas of channels, before they are joined to a network. */
@@ -10,6 +10,8 @@ export interface StripIndex {
   readonly channelsAt: (xMm: number, yMm: number) => readonly number[];
   /** Channels with a straight piece whose strip holds the whole disc. */
   readonly channelsRoundDisc: (xMm: number, yMm: number, radiusMm: number) => readonly number[];
+  /** Adds the stretches [from, to] of the line, as distances from its first point, that lie in a strip. */
+  readonly addStretches: (into: number[], x1Mm: number, y1Mm: number, x2Mm: number, y2Mm: number) => void;
   /** Channels whose strip the line enters. */
   readonly channelsAlong: (x1Mm: number, y1Mm: number, x2Mm: number, y2Mm: number) => readonly number[];
 }
@@ -49,6 +51,10 @@ export function indexStrips(channels: readonly Channel[], slackMm: number): Stri
           return Math.abs(across) <= pieces.half[i] + room && along >= -room && along <= length + room;
         }),
       ),
+    addStretches: (into, x1, y1, x2, y2) => {
+      const box = [Math.min(x1, x2), Math.min(y1, y2), Math.max(x1, x2), Math.max(y1, y2)] as const;
+      for (const i of search(...box)) addStripStretches(into, pieces, i, x1, y1, x2, y2, slackMm, null);
+    },
     channelsAlong: (x1, y1, x2, y2) =>
       channelsOf(
         search(Math.min(x1, x2), Math.min(y1, y2), Math.max(x1, x2), Math.max(y1, y2)).filter((i) => {

@@ -1,6 +1,6 @@
 /**
  * The widest span of a roof that pillars help to carry: the diameter of the largest circle that fits between the walls of a
- * channel and the pillars in it.
+ * channel, the pillars in it and the rims of its wells, where the roof ends.
  *
  * The room at a point (to the nearest wall or pillar) changes by no more than the way from there, so a square cell can hold no
  * circle wider than that at its middle by more than its diagonal. Cells are halved, the most promising first, until none can
@@ -14,6 +14,8 @@ import type { Channel, Obstacle } from '../chip/types.ts';
 import { distanceToSegment } from '../geometry/segment.ts';
 import type { Centreline } from '../layout/types.ts';
 
+type Circle = NonNullable<Obstacle['circle']>;
+
 /** Share of the channel's width within which the span is found. */
 const PRECISION = 1e-3;
 
@@ -21,9 +23,13 @@ const PRECISION = 1e-3;
 const MOST_CELLS = 300_000;
 
 /** mm, at most the channel's width. */
-export function freeSpanMm({ centrelines, drawnWidthMm }: Channel, pillars: readonly Obstacle[]): number {
+export function freeSpanMm(
+  { centrelines, drawnWidthMm }: Channel,
+  pillars: readonly Obstacle[],
+  wells: readonly Circle[] = [],
+): number {
   const half = drawnWidthMm / 2;
-  const pillarIndex = indexPillars(pillars);
+  const pillarIndex = indexPillars(pillars, wells);
   const strip = indexStrip(centrelines);
   /** Room at the point, or at the one nearest to it that is not beyond an open end. */
   const roomAt = (x: number, y: number): number => {
@@ -116,8 +122,8 @@ function nearestOnPiece(x: number, y: number, [x1, y1, x2, y2]: Edge, ends: numb
 }
 
 /** Negative inside a pillar, which is no room either. */
-function indexPillars(pillars: readonly Obstacle[]): Distances {
-  const circles = pillars.flatMap(({ circle }) => circle ?? []);
+function indexPillars(pillars: readonly Obstacle[], wells: readonly Circle[]): Distances {
+  const circles = [...pillars.flatMap(({ circle }) => circle ?? []), ...wells];
   const edges = indexShapes(pillars.flatMap(({ circle, rings }) => (circle === null ? [rings] : [])));
   if (circles.length === 0) return edges;
   const index = new Flatbush(circles.length);

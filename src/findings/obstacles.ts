@@ -24,8 +24,8 @@ function obstacles({ chip }: FindingContext): Finding[] {
     const who = whoText(group);
     const one = group.length === 1;
     const message = first.inside
-      ? `${who} ${one ? 'stands' : 'stand'} in ${name} and ${one ? 'is' : 'are'} no port: the pressures, flows and wall shears given are those of the empty channel`
-      : `${who} ${one ? 'lies' : 'lie'} across a wall of ${name} and ${one ? 'is' : 'are'} neither channel nor port: whether ${name} is wider or narrower there is not in the model`;
+      ? `${who} ${one ? 'stands' : 'stand'} in ${name} and ${one ? 'is no port' : 'are no ports'}: the pressures, flows and wall shears given are those of the empty channel`
+      : `${who} ${one ? 'lies' : 'lie'} across a wall of ${name} and ${one ? 'is neither channel nor port' : 'are neither channels nor ports'}: whether ${name} is wider or narrower there is not in the model`;
     const it = one ? 'it' : 'them';
     return toFinding('obstacle', 'caution', {
       message,

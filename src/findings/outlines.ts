@@ -87,7 +87,7 @@ function someOutlines(reason: OutlineReason, outlines: readonly OutlineFault[]):
   const one = outlines.length === 1;
   const [first] = outlines;
   const it = one ? 'it' : 'them';
-  const redraw = `draw the centreline of ${one ? first.name : 'each'}: one line along its middle with its width as the stroke width and no fill`;
+  const redraw = `draw the centreline of ${!one ? 'each' : namesOf(outlines).length === 0 ? 'it' : first.name}: one line along its middle with its width as the stroke width and no fill`;
   return toFinding('filled-outline', 'blocker', {
     message: `${namesText(outlines)} ${one ? 'is' : 'are'} drawn as ${LOOKS[reason](outlines)}; only strokes along a centreline are channels, so ${one ? 'it was' : 'they were'} left out`,
     fix:

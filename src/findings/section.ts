@@ -64,7 +64,7 @@ export const sectionRules: readonly Rule[] = [
         const spanMm =
           pillars.length === 0
             ? ductWidthMm
-            : ductWidthMm - channel.drawnWidthMm + freeSpanMm(channel, pillars);
+            : ductWidthMm - channel.drawnWidthMm + freeSpanMm(channel, pillars, chip.ports);
         const ratio = spanMm / depthMm;
         if (!isAbove(ratio, limit.value)) return null;
         const severity = isAbove(ratio, 2 * limit.value) ? 'blocker' : 'caution';
