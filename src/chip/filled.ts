@@ -131,7 +131,7 @@ function toShapes(
   unitMm: number,
   wells: Wells,
 ): Shape[] {
-  const toMm = (ring: Float64Array): Float64Array => ring.map((value) => value * unitMm);
+  const toMm = (ring: Float64Array): Float64Array => closedRing(ring).map((value) => value * unitMm);
   const shapes: Shape[] = outlines.map((outline) => ({
     ordinal: outline.ordinal,
     name: outline.name ?? 'unnamed shape',
@@ -167,6 +167,16 @@ function toShapes(
     shapes.push({ ...shape, mayBeChannel: false, isPad });
   }
   return shapes.sort((a, b) => a.ordinal - b.ordinal);
+}
+
+/** A fill closes what it fills. */
+function closedRing(ring: Float64Array): Float64Array {
+  const n = ring.length;
+  if (ring[0] === ring[n - 2] && ring[1] === ring[n - 1]) return ring;
+  const closed = new Float64Array(n + 2);
+  closed.set(ring);
+  closed.set([ring[0], ring[1]], n);
+  return closed;
 }
 
 function isConcentric({ x, y }: Hole, unitMm: number, { xMm, yMm, radiusMm }: Port): boolean {

@@ -5,7 +5,7 @@ import type { Channel, Port } from './types.ts';
 
 /**
  * Closed hairlines that are drawn round what is to be etched, not along its middle: no channel joins their centreline, and they
- * hold a port or another such line. A line that meets or lies in one that is found so belongs to it.
+ * hold a port or another such line. Where there is one, all that no channel joins are taken for such.
  *
  * A line holds a port that lies within it; and one whose well it touches where the area within the line is narrower than the
  * well is wide, for then the area leads into the well (a ring of channel through wells is far wider than they are).
@@ -47,10 +47,8 @@ export function findHairlines(
       if (!joined.has(line) && (isWithin || isNarrow)) found.add(line);
     }
   }
-  spread(found, (line) => meets[line], joined);
-  for (const [i, others] of inside.entries()) {
-    if (!joined.has(i) && others.some((other) => found.has(other))) found.add(i);
-  }
+  // Where one line is an outline, so are all that nothing joins.
+  if (found.size > 0) for (let line = 0; line < lines.length; line++) if (!joined.has(line)) found.add(line);
   const outlines = new Map<Channel, Port[]>();
   for (const line of [...found].sort((a, b) => a - b)) {
     const { channel } = lines[line];
@@ -112,24 +110,16 @@ function joinedLines(
       }
     }
   }
-  spread(joined, (line) => meets[line], new Set());
-  return joined;
-}
-
-/** Adds to a set all that hangs together with it. */
-function spread(
-  set: Set<number>,
-  neighbours: (line: number) => readonly number[],
-  without: ReadonlySet<number>,
-): void {
-  const pending = [...set];
+  // What such a line meets is joined by a channel too.
+  const pending = [...joined];
   for (let line = pending.pop(); line !== undefined; line = pending.pop()) {
-    for (const next of neighbours(line)) {
-      if (set.has(next) || without.has(next)) continue;
-      set.add(next);
+    for (const next of meets[line]) {
+      if (joined.has(next)) continue;
+      joined.add(next);
       pending.push(next);
     }
   }
+  return joined;
 }
 
 /** Width of a band of the same area and the same length of wall: 2 A / P. */
