@@ -61,6 +61,15 @@ describe('a filled shape', () => {
     expect(faultsOf(drafts)).toMatchObject([{ name: 'between', reason: 'end' }]);
   });
 
+  it('is none where it is a thin bridge from one channel to another, askew', () => {
+    const drafts = [
+      stroke('a', [0, 0, 30, 0], { width: 2 }),
+      stroke('b', [0, 10, 30, 10], { width: 2 }),
+      filled('bridge', [5, 0, 5.02, 0, 8.02, 4.1, 15.02, 10, 15, 10, 8, 4.1, 5, 0]),
+    ];
+    expect(obstaclesOf(drafts)).toEqual([['a', false]]);
+  });
+
   it('is none either where its edges run in channels round what is not etched', () => {
     const loop = stroke('loop', [], { width: 1, centrelines: [line(rectangle(0, 0, 10, 10), true)] });
     const away = stroke('away', [30, 0, 40, 0]);
