@@ -9,7 +9,7 @@ import type {
 } from '../runsheet/types.ts';
 
 /** Where a value came from, printed beside it: the run sheet, the drawing, usual practice of a process, or a default. */
-export type Origin = 'run sheet' | 'drawing' | 'usual practice, no source' | 'default';
+export type Origin = 'run sheet' | 'drawing' | 'typical value, not from your maker' | 'default';
 
 export interface Sourced<T> {
   readonly value: T;

@@ -262,7 +262,7 @@ function sampleChip(names: SampleNames, { show = {}, bare = false }: SampleOptio
       minWallM: () => ({ value: 40e-6, origin: 'run sheet' }),
       maxWidthToDepth: null,
       maxDepthToWidth: null,
-      edgeMarginM: { value: 2e-3, origin: 'usual practice, no source' },
+      edgeMarginM: { value: 2e-3, origin: 'typical value, not from your maker' },
       portGapM: null,
       portDiameterM: { value: [0.2e-3, 10e-3], origin: 'default' },
       portGridM: null,
