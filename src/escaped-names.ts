@@ -4,6 +4,7 @@
  * (an editor that means `_x20_` itself writes `_x5F_x20_`; that too is read as a space).
  */
 export function withoutEscapes(name: string): string {
+  if (!name.includes('_x')) return name;
   let text = name;
   for (let before = ''; before !== text; ) {
     before = text;

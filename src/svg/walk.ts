@@ -8,7 +8,7 @@ import type { Cascade, Specified } from './cascade.ts';
 import { parseLength, toUserUnits } from './lengths.ts';
 import { MAX_COPIES, MAX_ELEMENTS, MAX_GROUP_NAMES, MAX_PATH_COMMANDS } from './limits.ts';
 import { multiply, translation } from './matrix.ts';
-import { drawnId, drawnName, MAX_NAME, nameAsDrawn, nameAsWritten } from './names.ts';
+import { drawnId, MAX_NAME, nameAsDrawn, nameAsWritten, nameOf } from './names.ts';
 import { shapePath } from './shapes.ts';
 import {
   addDisguises,
@@ -250,11 +250,12 @@ class Walk {
       );
     }
     const { use } = context;
+    const written = (use && nameAsWritten(use)) ?? nameAsWritten(element);
     const shape: Shape = {
       tag,
       ordinal: this.shapes.length,
       // A shape drawn by `use` goes by the name that the use was given, if any: each copy can have its own.
-      name: (use && drawnName(use)) ?? drawnName(element),
+      name: nameOf(written),
       id: (use && drawnId(use)) ?? drawnId(element),
       groups: this.#groupsOf(context.chain, element),
       dataChannel: [element, use].some((one) => one !== null && attribute(one, 'data-channel') !== undefined),
@@ -265,10 +266,7 @@ class Walk {
       clips: context.clips,
     };
     this.shapes.push(shape);
-    if (shape.name !== null) {
-      const written = (use && nameAsWritten(use)) ?? nameAsWritten(element);
-      if (written !== null && written !== shape.name) this.escaped.set(shape, written);
-    }
+    if (written !== null && written !== shape.name) this.escaped.set(shape, written);
     return null;
   }
 
@@ -395,12 +393,12 @@ class Walk {
   }
 
   #extend(chain: GroupChain | null, element: XmlElement, depth?: string | null): GroupChain | null {
-    const name = drawnName(element);
+    const written = nameAsWritten(element);
+    const name = nameOf(written);
     const dataDepth = depth ?? attribute(element, 'data-depth') ?? null;
     if (name === null && dataDepth === null) return chain;
     const group: Group = { name, dataDepth };
     if (name !== null) {
-      const written = nameAsWritten(element);
       if (written !== null && written !== name) this.escaped.set(group, written);
       this.#addUndrawn('group', name, 'it holds nothing that is drawn');
     }
