@@ -30,7 +30,8 @@ describe('limits', () => {
         limits.maxPressurePa,
       ];
       expect(all.map((limit) => limit?.value ?? null)).toEqual(values);
-      for (const limit of all) if (limit !== null) expect(limit.origin).toBe('typical value, not from your maker');
+      for (const limit of all)
+        if (limit !== null) expect(limit.origin).toBe('typical value, not from your maker');
       expect(limits.stiffnessPa?.value ?? null).toBe(process === 'cast elastomer' ? 1.5e6 : null);
     });
   }
