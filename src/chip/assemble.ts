@@ -1,14 +1,15 @@
-import type { Layout } from '../layout/types.ts';
+import type { Layout, LayoutItem } from '../layout/types.ts';
 import type { RunSheet } from '../runsheet/types.ts';
 import { readChannels } from './channels.ts';
-import { DEFAULT_JOIN_WITHIN_MM, DEFAULT_JOINTS } from './defaults.ts';
+import { DEFAULT_JOIN_WITHIN_MM, DEFAULT_JOINTS, OBSTACLE_KIND } from './defaults.ts';
 import { type DrawnEdge, findEdge } from './edge.ts';
-import { findFilledOutlines } from './filled.ts';
+import { readAreas } from './filled.ts';
 import { resolveFluid } from './fluid.ts';
 import { drawnLayers, drawnShapes, refuseUnknownNames } from './known-names.ts';
 import { layerFinder, withDrawnDepths } from './layers.ts';
 import { resolveLimits } from './limits.ts';
 import { readPorts } from './ports.ts';
+import { circleRing } from './rings.ts';
 import { resolveScale } from './scale.ts';
 import { selectItems } from './select.ts';
 import { settingsFinder } from './settings.ts';
@@ -41,40 +42,39 @@ export function assembleChip({ layout, sheet: written, file, layoutSha256 }: Chi
   const { unitMm } = scale;
 
   const finder = layerFinder(sheet);
-  const { strokes, holes, outlines, ignored, setAside } = selectItems(layout, sheet, edge, finder);
+  const { strokes, holes, outlines, ellipses, ignored, setAside } = selectItems(layout, sheet, edge, finder);
   const settings = settingsFinder(sheet, 'channels', sheet?.channels ?? {});
   const conditions = settingsFinder(sheet, 'ports', sheet?.ports ?? {});
-  const channels = readChannels(strokes, unitMm, finder, settings, file);
-  const ports = readPorts(
-    holes,
-    unitMm,
-    sheet,
-    limits.portDiameterM.value,
-    file,
-    ignored,
-    setAside,
-    conditions,
-  );
+  const drawn = readChannels(strokes, unitMm, finder, settings, file);
+  const ports = readPorts(holes, unitMm, sheet, limits.portDiameterM.value, file, setAside, conditions);
   if (sheet !== null) {
-    sheet = withTargetsNamed(sheet, channels.drawnNames, ports.drawnNames);
+    sheet = withTargetsNamed(sheet, drawn.drawnNames, ports.drawnNames);
     const names = {
-      channels: channels.drawnNames,
+      channels: drawn.drawnNames,
       ports: ports.drawnNames,
       layers: drawnLayers(layout),
       shapes: drawnShapes(layout),
-      isMade: (name: string) => channels.isMade(name) || ports.isMade(name),
+      isMade: (name: string) => drawn.isMade(name) || ports.isMade(name),
       setAside,
+      undrawn: layout.undrawn,
     };
     refuseUnknownNames(sheet, names, { channels: settings, ports: conditions });
   }
-  const filled = findFilledOutlines(
-    outlines,
-    ports.unsuitable,
+  const { unsuitable, outside } = ports;
+  const areas = readAreas(
+    { outlines, unsuitable, outside, ellipses },
     unitMm,
-    channels.channels,
+    drawn.channels,
     ports.ports,
     joinWithinMm,
-    ignored,
+  );
+  const { channels, obstacles } = areas;
+  for (const kind of areas.counted) ignored.add(kind);
+  if (obstacles.length > 0) ignored.add(OBSTACLE_KIND, obstacles.length);
+  const outlineNames = new Set(areas.faults.map(({ name }) => name));
+  // What a line lacks is of no account once it is no channel.
+  const channelFaults = drawn.faults.filter(
+    (fault) => !('channel' in fault && outlineNames.has(fault.channel)),
   );
   const assumed: readonly ReadingFault[] = scale.assumed
     ? [{ kind: 'assumed-scale', reason: scale.reason }]
@@ -89,13 +89,15 @@ export function assembleChip({ layout, sheet: written, file, layoutSha256 }: Chi
     widthMm: layout.widthMm === null ? null : layout.widthMm * resize,
     heightMm: layout.heightMm === null ? null : layout.heightMm * resize,
     planes: finder.planes,
-    layers: withDrawnDepths(finder.layers, channels.channels),
-    channels: channels.channels,
+    layers: withDrawnDepths(finder.layers, channels),
+    channels,
     ports: ports.ports,
+    obstacles,
     edge: edge === null ? null : inMm(edge, unitMm),
     sizeMm: sheet?.sizeMm ?? null,
     ignored: ignored.toRecord(),
-    faults: [...assumed, ...channels.faults, ...filled],
+    unreadLines: unreadLines(layout, edge, unitMm, [...channels, ...ports.ports, ...obstacles]),
+    faults: [...assumed, ...channelFaults, ...areas.faults],
     fluid,
     joinWithinMm,
     // Joints one by one are not computed yet: the finding not-computed says what is counted instead.
@@ -105,6 +107,33 @@ export function assembleChip({ layout, sheet: written, file, layoutSha256 }: Chi
     accept: sheet?.accept ?? [],
     sheet,
   };
+}
+
+/** Everything drawn with an extent that is none of the things read. */
+function unreadLines(
+  layout: Layout,
+  edge: DrawnEdge | null,
+  unitMm: number,
+  read: readonly { readonly ordinal: number }[],
+): readonly Float64Array[] {
+  const known = new Set(read.map(({ ordinal }) => ordinal));
+  return layout.items
+    .filter(({ ordinal }) => !known.has(ordinal) && !edge?.ordinals.has(ordinal))
+    .flatMap((item) => linesOf(item).map((line) => line.map((value) => value * unitMm)));
+}
+
+function linesOf(item: LayoutItem): readonly Float64Array[] {
+  switch (item.kind) {
+    case 'stroke':
+      return item.centrelines.map(({ points }) => points);
+    case 'outline':
+    case 'ignored':
+      return item.rings;
+    case 'hole':
+      return [circleRing(item.x, item.y, item.radius)];
+    default:
+      return item satisfies never;
+  }
 }
 
 function inMm({ name, rings, sides }: DrawnEdge, unitMm: number): ChipEdge {

@@ -70,6 +70,7 @@ export function readChannels(
       linecap: stroke.linecap,
       centrelines: unitMm === 1 ? stroke.centrelines : stroke.centrelines.map((line) => inMm(line, unitMm)),
       disguises: stroke.disguises,
+      dataChannel: stroke.dataChannel,
       settings: own,
     });
   }

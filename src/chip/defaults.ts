@@ -22,3 +22,9 @@ export const CHIP_PLANE = 'chip';
 
 /** Two sizes of one thing agree within this share: the drawing's unit and the sheet's, the edge and `size`. */
 export const SIZE_AGREEMENT = 0.005;
+
+/** Widest stroke that counts as a hairline: just over one CSS px, 0.265 mm (common practice, no source). */
+export const DEFAULT_HAIRLINE_MM = 0.3;
+
+/** Key of obstacles in the count of what is not read; the finding of that name tells where they are. */
+export const OBSTACLE_KIND = 'obstacle in a channel';

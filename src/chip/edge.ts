@@ -32,6 +32,14 @@ export function findEdge(layout: Layout, sheet: RunSheet | null, file: string): 
     const names = new Set<string>();
     for (const item of layout.items) if (item.name !== null) names.add(item.name);
     const near = nearest(asked, names);
+    const hidden = layout.undrawn.find(({ name: other }) => other === asked.trim());
+    if (hidden !== undefined) {
+      refuse(
+        sheet,
+        ['outline'],
+        `outline: ${quote(asked)} is in the drawing but is not drawn: ${hidden.why}`,
+      );
+    }
     refuse(
       sheet,
       ['outline'],

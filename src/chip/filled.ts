@@ -1,144 +1,441 @@
+/**
+ * Drawn areas that are no centrelines, told apart: outlines of channels (a fault), obstacles in a channel, and the rest.
+ *
+ * A channel is a stroke along its middle. What CAD programs export are fills, or hairlines round what would be etched: read as
+ * if they were channels, or passed over, they would give a wrong network without a word.
+ */
 import Flatbush from 'flatbush';
-import type { Hole, Outline } from '../layout/types.ts';
-import { indexRings } from './rings.ts';
-import type { Tally } from './select.ts';
-import type { Channel, Port, ReadingFault } from './types.ts';
+import { addDiscStretch, coveredUpTo } from '../geometry/strip.ts';
+import type { Hole, Ignored, Outline } from '../layout/types.ts';
+import { findHairlines } from './hairlines.ts';
+import { circleRing, indexRings, outerRings, type RingIndex } from './rings.ts';
+import { indexStrips, type StripIndex } from './strip-index.ts';
+import type { Channel, Obstacle, OutlineFault, OutlineReason, Port } from './types.ts';
+
+/** Everything drawn that encloses an area and is neither channel nor port. */
+export interface DrawnAreas {
+  readonly outlines: readonly Outline[];
+  /** Circles of no port size. */
+  readonly unsuitable: readonly Hole[];
+  /** Circles outside the ports layer. */
+  readonly outside: readonly Hole[];
+  /** Unfilled, and not round. */
+  readonly ellipses: readonly Ignored[];
+}
+
+export interface AreaReading {
+  readonly faults: readonly OutlineFault[];
+  readonly obstacles: readonly Obstacle[];
+  /** Without the hairlines that are outlines. */
+  readonly channels: readonly Channel[];
+  /** What is only counted, by kind, each as often as it was met. */
+  readonly counted: readonly string[];
+}
 
 /**
- * Filled closed shapes: a fault when stroked too, or when a channel end touches one; else only counted.
+ * A filled shape is a fault when it is stroked too, or when a channel end or a port touches it or lies on it; all that is
+ * drawn is one in a drawing without channels. A shape that lies in the etched area of a channel can't be one: it is an
+ * obstacle there. One that holds every channel and port is background.
  *
- * An end touches a shape when the shape's edge is within half the channel's width of it, or when it ends inside and its
- * other end lies outside. An end in a well touches nothing that lies inside that well: drawn decoration of a port.
- * @param circles circles that are no ports; unfilled ones are only counted
+ * An end touches a shape when the shape's edge is within half the channel's width of it, or when it lies inside. An end in a
+ * well is the port's, and touches no shape; a shape that lies in a well is decoration of the port.
+ * Cost: n log n in the corners of shapes and channels.
  */
-export function findFilledOutlines(
-  outlines: readonly Outline[],
-  circles: readonly Hole[],
+export function readAreas(
+  areas: DrawnAreas,
   unitMm: number,
-  channels: readonly Channel[],
+  drawn: readonly Channel[],
   ports: readonly Port[],
-  joinWithinMm: number,
-  ignored: Tally,
-): readonly ReadingFault[] {
-  const shapes: Shape[] = outlines.map((outline) => ({
-    ordinal: outline.ordinal,
-    name: outline.name ?? 'unnamed shape',
-    rings: outline.rings.map((ring) => ring.map((value) => value * unitMm)),
-    stroked: outline.stroked,
-    kind: 'filled outline',
-  }));
-  const wellsAt = wellFinder(ports, joinWithinMm);
-  for (const circle of circles) {
-    const shape = filledCircle(circle, unitMm);
-    // A dot in a well belongs to the port, as concentric circles do.
-    const inWell = wellsAt(circle.x * unitMm, circle.y * unitMm).some((port) =>
-      insideWell(shape, port, joinWithinMm),
-    );
-    if (circle.filled && !inWell) shapes.push(shape);
-    else ignored.add(shape.kind);
-  }
-  if (shapes.length === 0) return [];
-  shapes.sort((a, b) => a.ordinal - b.ordinal);
-  const touched = touchedShapes(shapes, channels, wellsAt, joinWithinMm);
-  const faults: ReadingFault[] = [];
-  for (const [i, { name, rings, stroked, kind }] of shapes.entries()) {
-    if (!stroked && !touched.has(i)) {
-      ignored.add(kind);
-      continue;
+  slackMm: number,
+): AreaReading {
+  const hairlines = findHairlines(drawn, ports, slackMm);
+  const channels = hairlines.size === 0 ? drawn : drawn.filter((channel) => !hairlines.has(channel));
+  const faults: OutlineFault[] = [...hairlines].map(
+    ([
+      {
+        name,
+        centrelines: [{ points }],
+      },
+      held,
+    ]) => ({
+      kind: 'filled-outline',
+      name,
+      xMm: points[0],
+      yMm: points[1],
+      reason: 'hairline',
+      ports: held.map((port) => port.name),
+      ends: [],
+    }),
+  );
+  const wells = indexWells(ports, slackMm);
+  const shapes = toShapes(areas, unitMm, wells);
+  if (shapes.length === 0) return { faults, obstacles: [], channels, counted: [] };
+
+  const touching = touchedShapes(shapes, channels, ports, wells, slackMm);
+  const strips = channels.length === 0 ? null : indexStrips(channels, slackMm);
+  const isBackground = backgroundTest(channels, ports, slackMm);
+  const obstacles: Obstacle[] = [];
+  const counted: string[] = [];
+  for (const [i, shape] of shapes.entries()) {
+    const found = judge(shape, touching[i]);
+    if (found === 'counted') counted.push(shape.kind);
+    else if (found.kind === 'obstacle') obstacles.push(found.obstacle);
+    else {
+      const { name, rings } = shape;
+      const [xMm, yMm] = [rings[0]?.[0] ?? Number.NaN, rings[0]?.[1] ?? Number.NaN];
+      const { ports: on, ends } = touching[i];
+      faults.push({ kind: 'filled-outline', name, xMm, yMm, reason: found.reason, ports: on, ends });
     }
-    const [xMm, yMm] = [rings[0]?.[0] ?? Number.NaN, rings[0]?.[1] ?? Number.NaN];
-    faults.push({ kind: 'filled-outline', name, xMm, yMm, stroked });
   }
-  return faults;
+  return { faults, obstacles, channels, counted };
+
+  function judge(shape: Shape, { ends, ports: on, inWell }: Touch): Judgement {
+    if (shape.dataChannel) return { kind: 'fault', reason: 'no-stroke' };
+    if (inWell) return 'counted';
+    if (strips === null) return shape.mayBeChannel ? { kind: 'fault', reason: 'no-channels' } : 'counted';
+    if (isBackground(shape)) return 'counted';
+    const within = whereInStrips(shape, strips, channels, wells, slackMm);
+    if (within?.inside === true && !shape.isPad) return toObstacle(shape, within);
+    if (!shape.filled) return 'counted';
+    if (shape.stroked && shape.mayBeChannel) return { kind: 'fault', reason: 'stroked' };
+    if (ends.length > 0) return { kind: 'fault', reason: 'end' };
+    if (on.length > 0 && shape.mayBeChannel) return { kind: 'fault', reason: 'port' };
+    return within === null || shape.isPad ? 'counted' : toObstacle(shape, within);
+  }
 }
+
+type Judgement =
+  | 'counted'
+  | { readonly kind: 'fault'; readonly reason: OutlineReason }
+  | { readonly kind: 'obstacle'; readonly obstacle: Obstacle };
 
 interface Shape {
   readonly ordinal: number;
   readonly name: string;
-  /** mm */
+  /** mm, first point repeated at the end */
   readonly rings: readonly Float64Array[];
+  readonly filled: boolean;
   readonly stroked: boolean;
+  readonly dataChannel: boolean;
+  /** It may be an outline by itself; a circle outside the ports layer only where a channel ends on it. */
+  readonly mayBeChannel: boolean;
+  /** A circle round a port. */
+  readonly isPad: boolean;
+  readonly circle: Obstacle['circle'];
+  /** Key in the count of ignored shapes. */
   readonly kind: string;
 }
 
-function filledCircle(circle: Hole, unitMm: number): Shape {
-  const corners = 128;
-  const ring = new Float64Array(2 * corners);
-  for (let i = 0; i < corners; i++) {
-    const angle = (2 * Math.PI * i) / corners;
-    ring[2 * i] = (circle.x + circle.radius * Math.cos(angle)) * unitMm;
-    ring[2 * i + 1] = (circle.y + circle.radius * Math.sin(angle)) * unitMm;
+function toShapes(
+  { outlines, unsuitable, outside, ellipses }: DrawnAreas,
+  unitMm: number,
+  wells: Wells,
+): Shape[] {
+  const toMm = (ring: Float64Array): Float64Array => closedRing(ring).map((value) => value * unitMm);
+  const shapes: Shape[] = outlines.map((outline) => ({
+    ordinal: outline.ordinal,
+    name: outline.name ?? 'unnamed shape',
+    rings: outline.rings.map(toMm),
+    filled: true,
+    stroked: outline.stroked,
+    dataChannel: outline.dataChannel,
+    mayBeChannel: true,
+    isPad: false,
+    circle: null,
+    kind: 'filled outline',
+  }));
+  for (const item of ellipses) {
+    shapes.push({
+      ordinal: item.ordinal,
+      name: item.name ?? 'unnamed ellipse',
+      rings: item.rings.map(toMm),
+      filled: false,
+      stroked: true,
+      dataChannel: false,
+      mayBeChannel: false,
+      isPad: false,
+      circle: null,
+      kind: item.reason,
+    });
   }
+  for (const circle of unsuitable) shapes.push(circleShape(circle, unitMm, 'circle of no port size'));
+  for (const circle of outside) {
+    const shape = circleShape(circle, unitMm, 'circle outside the ports layer');
+    const isPad = wells
+      .at(circle.x * unitMm, circle.y * unitMm)
+      .some((port) => isConcentric(circle, unitMm, port));
+    shapes.push({ ...shape, mayBeChannel: false, isPad });
+  }
+  return shapes.sort((a, b) => a.ordinal - b.ordinal);
+}
+
+/** A fill closes what it fills. */
+function closedRing(ring: Float64Array): Float64Array {
+  const n = ring.length;
+  if (ring[0] === ring[n - 2] && ring[1] === ring[n - 1]) return ring;
+  const closed = new Float64Array(n + 2);
+  closed.set(ring);
+  closed.set([ring[0], ring[1]], n);
+  return closed;
+}
+
+function isConcentric({ x, y }: Hole, unitMm: number, { xMm, yMm, radiusMm }: Port): boolean {
+  return Math.hypot(x * unitMm - xMm, y * unitMm - yMm) <= 0.01 * radiusMm;
+}
+
+function circleShape(circle: Hole, unitMm: number, kind: string): Shape {
+  const [xMm, yMm, radiusMm] = [circle.x * unitMm, circle.y * unitMm, circle.radius * unitMm];
   return {
     ordinal: circle.ordinal,
     name: circle.name ?? 'unnamed circle',
-    rings: [ring],
+    rings: [circleRing(xMm, yMm, radiusMm)],
+    filled: circle.filled,
     stroked: circle.stroked,
-    kind: 'circle of no port size',
+    dataChannel: false,
+    mayBeChannel: circle.filled,
+    isPad: false,
+    circle: { xMm, yMm, radiusMm },
+    kind,
   };
+}
+
+/** What of the chip comes to a shape. */
+interface Touch {
+  readonly ends: OutlineFault['ends'][number][];
+  /** Names of ports that touch it or lie on it. */
+  readonly ports: string[];
+  /** It lies wholly in a port's well: decoration of the port. */
+  inWell: boolean;
 }
 
 function touchedShapes(
   shapes: readonly Shape[],
   channels: readonly Channel[],
-  wellsAt: WellsAt,
-  joinWithinMm: number,
-): ReadonlySet<number> {
-  const touched = new Set<number>();
+  ports: readonly Port[],
+  wells: Wells,
+  slackMm: number,
+): readonly Touch[] {
+  const touching: Touch[] = shapes.map(({ rings, circle }) => {
+    const [x, y] = circle === null ? [rings[0]?.[0] ?? 0, rings[0]?.[1] ?? 0] : [circle.xMm, circle.yMm];
+    const inWell = wells.at(x, y).some((port) => isInsideWell(rings, port, slackMm));
+    return { ends: [], ports: [], inWell };
+  });
   const index = indexRings(shapes.map(({ rings }) => rings));
-  const addTouched = (
-    x: number,
-    y: number,
-    round: readonly number[],
-    roundOther: readonly number[],
-    reach: number,
-  ): void => {
-    const near = index.groupsWithin(x, y, reach);
-    if (near.length === 0 && round.length === 0) return;
-    const wells = wellsAt(x, y);
-    for (const shape of near) {
-      if (!wells.some((port) => insideWell(shapes[shape]!, port, joinWithinMm))) touched.add(shape);
+  const touchAt = ({ name, stripHalfWidthMm }: Channel, x: number, y: number): void => {
+    if (wells.at(x, y).length > 0) return;
+    const near = index.groupsWithin(x, y, stripHalfWidthMm + slackMm);
+    for (const shape of new Set([...near, ...index.groupsRound(x, y)])) {
+      touching[shape].ends.push({ channel: name, xMm: x, yMm: y });
     }
-    if (wells.length > 0) return;
-    for (const shape of round) if (!roundOther.includes(shape)) touched.add(shape);
   };
   for (const channel of channels) {
-    const reach = channel.stripHalfWidthMm + joinWithinMm;
     for (const { points, closed } of channel.centrelines) {
       if (closed) continue;
       const n = points.length;
-      const [x1, y1, x2, y2] = [points[0]!, points[1]!, points[n - 2]!, points[n - 1]!];
-      const round1 = index.groupsRound(x1, y1);
-      const round2 = index.groupsRound(x2, y2);
-      addTouched(x1, y1, round1, round2, reach);
-      addTouched(x2, y2, round2, round1, reach);
+      touchAt(channel, points[0], points[1]);
+      touchAt(channel, points[n - 2], points[n - 1]);
     }
   }
-  return touched;
+  for (const { name, xMm, yMm, radiusMm } of ports) {
+    const near = new Set(index.groupsWithin(xMm, yMm, radiusMm + slackMm));
+    for (const shape of index.groupsRound(xMm, yMm)) near.add(shape);
+    for (const shape of near) touching[shape].ports.push(name);
+  }
+  return touching;
 }
 
-type WellsAt = (x: number, y: number) => readonly Port[];
+interface Wells {
+  /** Ports whose well holds the point. */
+  readonly at: (x: number, y: number) => readonly Port[];
+  /** Ports whose well may meet the line. */
+  readonly along: (x1: number, y1: number, x2: number, y2: number) => readonly Port[];
+}
 
-function wellFinder(ports: readonly Port[], slackMm: number): WellsAt {
-  if (ports.length === 0) return () => [];
+function indexWells(ports: readonly Port[], slackMm: number): Wells {
+  if (ports.length === 0) return { at: () => [], along: () => [] };
   const index = new Flatbush(ports.length);
   for (const { xMm, yMm, radiusMm } of ports) {
     const r = radiusMm + slackMm;
     index.add(xMm - r, yMm - r, xMm + r, yMm + r);
   }
   index.finish();
-  return (x, y) =>
-    index
-      .search(x, y, x, y)
-      .map((i) => ports[i]!)
-      .filter(({ xMm, yMm, radiusMm }) => Math.hypot(x - xMm, y - yMm) <= radiusMm + slackMm);
+  const along: Wells['along'] = (x1, y1, x2, y2) =>
+    index.search(Math.min(x1, x2), Math.min(y1, y2), Math.max(x1, x2), Math.max(y1, y2)).map((i) => ports[i]);
+  return {
+    at: (x, y) =>
+      along(x, y, x, y).filter(
+        ({ xMm, yMm, radiusMm }) => Math.hypot(x - xMm, y - yMm) <= radiusMm + slackMm,
+      ),
+    along,
+  };
 }
 
-function insideWell({ rings }: Shape, { xMm, yMm, radiusMm }: Port, slackMm: number): boolean {
+function isInsideWell(
+  rings: readonly Float64Array[],
+  { xMm, yMm, radiusMm }: Port,
+  slackMm: number,
+): boolean {
   return rings.every((ring) => {
     for (let i = 0; i < ring.length; i += 2) {
       if (Math.hypot(ring[i]! - xMm, ring[i + 1]! - yMm) > radiusMm + slackMm) return false;
     }
     return true;
   });
+}
+
+/** Whether a shape, its holes filled, holds every centreline and every port's middle; touching its edge is inside. */
+function backgroundTest(
+  channels: readonly Channel[],
+  ports: readonly Port[],
+  slackMm: number,
+): (shape: Shape) => boolean {
+  const points: (readonly [number, number])[] = ports.map(({ xMm, yMm }) => [xMm, yMm]);
+  for (const { centrelines } of channels)
+    for (const line of centrelines)
+      for (let i = 0; i < line.points.length; i += 2) points.push([line.points[i], line.points[i + 1]]);
+  let [left, top, right, bottom] = [Infinity, Infinity, -Infinity, -Infinity];
+  for (const [x, y] of points) {
+    left = Math.min(left, x);
+    right = Math.max(right, x);
+    top = Math.min(top, y);
+    bottom = Math.max(bottom, y);
+  }
+  return ({ rings, filled }) => {
+    if (!filled || !boxHolds(rings, left, top, right, bottom, slackMm)) return false;
+    const index: RingIndex = indexRings([outerRings(rings)]);
+    return points.every(([x, y]) => index.contains(x, y) || index.groupsWithin(x, y, slackMm).length > 0);
+  };
+}
+
+function boxHolds(
+  rings: readonly Float64Array[],
+  left: number,
+  top: number,
+  right: number,
+  bottom: number,
+  slackMm: number,
+): boolean {
+  let [minX, minY, maxX, maxY] = [Infinity, Infinity, -Infinity, -Infinity];
+  for (const ring of rings) {
+    for (let i = 0; i < ring.length; i += 2) {
+      minX = Math.min(minX, ring[i]);
+      maxX = Math.max(maxX, ring[i]);
+      minY = Math.min(minY, ring[i + 1]);
+      maxY = Math.max(maxY, ring[i + 1]);
+    }
+  }
+  return (
+    minX <= left + slackMm && maxX >= right - slackMm && minY <= top + slackMm && maxY >= bottom - slackMm
+  );
+}
+
+interface Place {
+  /** Index of the channel. */
+  readonly channel: number;
+  /** All of the shape lies in the etched area and the wells; else it lies across a wall of it. */
+  readonly inside: boolean;
+}
+
+/** Where in the etched area a shape lies; null when it lies in none. */
+function whereInStrips(
+  shape: Shape,
+  strips: StripIndex,
+  channels: readonly Channel[],
+  wells: Wells,
+  slackMm: number,
+): Place | null {
+  const { circle, rings } = shape;
+  if (circle !== null) {
+    const round = strips.channelsRoundDisc(circle.xMm, circle.yMm, circle.radiusMm);
+    if (round.length > 0) return { channel: widestOf(round), inside: true };
+  }
+  if (isAllEtched(rings, strips, wells, slackMm)) {
+    /** Corners of the shape in each channel. */
+    const corners = new Map<number, number>();
+    for (const ring of rings) {
+      for (let i = 0; i + 3 < ring.length; i += 2) {
+        for (const channel of strips.channelsAt(ring[i], ring[i + 1])) {
+          corners.set(channel, (corners.get(channel) ?? 0) + 1);
+        }
+      }
+    }
+    if (corners.size > 0) {
+      const most = Math.max(...corners.values());
+      const best = [...corners].filter(([, held]) => held === most).map(([channel]) => channel);
+      return { channel: widestOf(best), inside: true };
+    }
+  }
+  const met = new Set<number>();
+  for (const ring of rings) {
+    for (let i = 0; i + 3 < ring.length; i += 2) {
+      for (const channel of strips.channelsAlong(ring[i], ring[i + 1], ring[i + 2], ring[i + 3]))
+        met.add(channel);
+    }
+  }
+  return met.size === 0 ? null : { channel: widestOf([...met]), inside: false };
+
+  function widestOf(candidates: readonly number[]): number {
+    return candidates.reduce((best, one) =>
+      channels[one].stripHalfWidthMm > channels[best].stripHalfWidthMm ? one : best,
+    );
+  }
+}
+
+/** Looked at in each direction across a shape for material within. */
+const LOOKS = 6;
+
+/** Whether the edges of a shape, and what lies between them, are all in strips and wells. */
+function isAllEtched(
+  rings: readonly Float64Array[],
+  strips: StripIndex,
+  wells: Wells,
+  slackMm: number,
+): boolean {
+  let [left, top, right, bottom] = [Infinity, Infinity, -Infinity, -Infinity];
+  for (const ring of rings) {
+    for (let i = 0; i < ring.length; i += 2) {
+      if (i > 0 && !isEdgeEtched(ring[i - 2], ring[i - 1], ring[i], ring[i + 1], strips, wells, slackMm)) {
+        return false;
+      }
+      left = Math.min(left, ring[i]);
+      right = Math.max(right, ring[i]);
+      top = Math.min(top, ring[i + 1]);
+      bottom = Math.max(bottom, ring[i + 1]);
+    }
+  }
+  // Edges along a loop of channels may enclose the material that it goes round.
+  const area = indexRings([rings]);
+  for (let i = 0; i < LOOKS; i++) {
+    for (let k = 0; k < LOOKS; k++) {
+      const x = left + ((i + 0.5) / LOOKS) * (right - left);
+      const y = top + ((k + 0.5) / LOOKS) * (bottom - top);
+      if (!area.contains(x, y)) continue;
+      if (strips.channelsAt(x, y).length === 0 && wells.at(x, y).length === 0) return false;
+    }
+  }
+  return true;
+}
+
+function isEdgeEtched(
+  x1: number,
+  y1: number,
+  x2: number,
+  y2: number,
+  strips: StripIndex,
+  wells: Wells,
+  slackMm: number,
+): boolean {
+  const span = Math.hypot(x2 - x1, y2 - y1);
+  if (span === 0) return true;
+  const stretches: number[] = [];
+  strips.addStretches(stretches, x1, y1, x2, y2);
+  for (const { xMm, yMm, radiusMm } of wells.along(x1, y1, x2, y2)) {
+    const [dx, dy] = [(x2 - x1) / span, (y2 - y1) / span];
+    addDiscStretch(stretches, xMm, yMm, radiusMm + slackMm, x1, y1, dx, dy, span);
+  }
+  return coveredUpTo(stretches, 0, slackMm) >= span - slackMm;
+}
+
+function toObstacle({ name, ordinal, rings, circle }: Shape, { channel, inside }: Place): Judgement {
+  return { kind: 'obstacle', obstacle: { name, ordinal, channel, inside, rings, circle } };
 }

@@ -4,6 +4,7 @@ import { nearest } from '../runsheet/nearest.ts';
 import { type KeyPath, pathText } from '../runsheet/path-text.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { RunSheet } from '../runsheet/types.ts';
+import type { Undrawn } from '../svg/types.ts';
 import { refuse } from './complain.ts';
 import type { SettingsFinder } from './settings.ts';
 
@@ -19,6 +20,8 @@ export interface KnownNames {
   readonly isMade: (name: string) => boolean;
   /** Names drawn but not read, with why. */
   readonly setAside: ReadonlyMap<string, string>;
+  /** Named shapes and groups that are not drawn. */
+  readonly undrawn: readonly Undrawn[];
 }
 
 /** Every named group of the drawing, by layer key. */
@@ -118,14 +121,12 @@ function unknown(
   what: 'channel' | 'port' | 'layer' | 'shape',
   name: string,
   candidates: Iterable<string>,
-  { isMade, setAside }: KnownNames,
+  names: KnownNames,
 ): never {
   const key = pathText(path);
-  if (isMade(name)) refuse(sheet, path, `${key}: ${madeUp(name)}`);
-  const why = setAside.get(name);
-  if ((what === 'channel' || what === 'port') && why !== undefined) {
-    refuse(sheet, path, `${key}: ${quote(name)} is drawn but is no ${what} here: ${why}`);
-  }
+  if (names.isMade(name)) refuse(sheet, path, `${key}: ${madeUp(name)}`);
+  const other = somethingElse(what, name, names);
+  if (other !== null) refuse(sheet, path, `${key}: ${other}`);
   const all = [...candidates];
   const near = nearest(name.replaceAll('*', ''), all);
   const fact =
@@ -137,6 +138,42 @@ function unknown(
     path,
     `${key}: ${fact}; ${near === null ? listed(what, all) : `did you mean ${quote(near)}?`}`,
   );
+}
+
+/** What goes by the name (or the first that matches the pattern) though it is no channel, port or layer; null when nothing does. */
+function somethingElse(
+  what: 'channel' | 'port' | 'layer' | 'shape',
+  name: string,
+  { channels, ports, layers, setAside, undrawn }: KnownNames,
+): string | null {
+  const isPatternHere = isPattern(name) && (what === 'channel' || what === 'port');
+  const is =
+    what === 'layer'
+      ? (other: string): boolean => layerKey(other) === layerKey(name)
+      : (other: string): boolean => other === name || (isPatternHere && matches(name, other));
+  const whose = (other: string): string =>
+    isPatternHere ? `${quote(name)} matches no ${what}: ${quote(other)}` : quote(other);
+  if (what !== 'layer') {
+    for (const [other, why] of setAside) {
+      if (is(other)) return `${whose(other)} is drawn but is no ${what} here: ${why}`;
+    }
+    const taken = what === 'channel' ? ports : what === 'port' ? channels : [];
+    for (const other of taken) {
+      const why = what === 'channel' ? 'it is a circle, read as a port' : 'it is a stroke, read as a channel';
+      if (is(other)) return `${whose(other)} is drawn but is no ${what} here: ${why}`;
+    }
+  }
+  const hidden = undrawn.find((one) => (one.kind === 'group') === (what === 'layer') && is(one.name));
+  if (hidden !== undefined) return `${whose(hidden.name)} is in the drawing but is not drawn: ${hidden.why}`;
+  if (what === 'layer') {
+    const shape = [...channels, ...ports, ...setAside.keys()].find(is);
+    if (shape !== undefined) return `${quote(shape)} is a shape; a layer is a group of shapes`;
+    return null;
+  }
+  for (const layer of layers.values()) {
+    if (layer === name) return `${quote(name)} is a group of shapes; a ${what} is one of its shapes`;
+  }
+  return null;
 }
 
 function madeUp(name: string): string {

@@ -99,6 +99,7 @@ const USUAL: Readonly<Record<ProcessName, Usual>> = {
 
 function choose<T>(given: T | null | undefined, usual: T | null | undefined): Sourced<T> | null {
   if (given !== null && given !== undefined) return { value: given, origin: 'run sheet' };
-  if (usual !== null && usual !== undefined) return { value: usual, origin: 'usual practice, no source' };
+  if (usual !== null && usual !== undefined)
+    return { value: usual, origin: 'typical value, not from your maker' };
   return null;
 }

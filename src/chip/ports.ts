@@ -5,7 +5,6 @@ import { layerKey } from '../runsheet/names.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { PortEntry, RunSheet } from '../runsheet/types.ts';
 import { LIMIT_SLACK } from './limits.ts';
-import type { Tally } from './select.ts';
 import type { SettingsFinder } from './settings.ts';
 import type { Port } from './types.ts';
 import { UniqueNames } from './unique-names.ts';
@@ -15,6 +14,8 @@ export interface PortReading {
   readonly ports: readonly Port[];
   /** Circles that are no ports because of their size; filled ones may be drawn-out channels. */
   readonly unsuitable: readonly Hole[];
+  /** Circles outside the ports layer. */
+  readonly outside: readonly Hole[];
   readonly drawnNames: ReadonlySet<string>;
   readonly isMade: (name: string) => boolean;
 }
@@ -30,20 +31,20 @@ export function readPorts(
   sheet: RunSheet | null,
   diameterM: readonly [number, number],
   file: string,
-  ignored: Tally,
   setAside: Map<string, string>,
   settings: SettingsFinder<PortEntry>,
 ): PortReading {
   const layer = sheet?.portsLayer == null ? null : layerKey(sheet.portsLayer);
   const suitable: Hole[] = [];
   const unsuitable: Hole[] = [];
+  const outside: Hole[] = [];
   const note = (hole: Hole, why: string): void => {
     if (hole.name !== null && !setAside.has(hole.name)) setAside.set(hole.name, why);
   };
   for (const hole of holes) {
     const diameterMm = 2 * hole.radius * unitMm;
     if (layer !== null && !hole.groups.some((group) => layerKey(group) === layer)) {
-      ignored.add('circle outside the ports layer');
+      outside.push(hole);
       note(hole, 'it is not in the ports layer');
     } else if (
       diameterMm < diameterM[0] * 1000 * (1 - LIMIT_SLACK) ||
@@ -80,7 +81,7 @@ export function readPorts(
       expect: entry?.expect ?? null,
     };
   });
-  return { ports, unsuitable, drawnNames, isMade: (name) => names.isMade(name) };
+  return { ports, unsuitable, outside, drawnNames, isMade: (name) => names.isMade(name) };
 }
 
 /** Centres within 1 µm, or within 1 % of the larger radius, are one centre. Each group has its largest circle first. */

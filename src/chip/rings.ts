@@ -12,6 +12,8 @@ export interface RingIndex {
   readonly groupsRound: (x: number, y: number) => readonly number[];
   /** Groups with an edge nearer than `distance`. */
   readonly groupsWithin: (x: number, y: number, distance: number) => readonly number[];
+  /** Groups with an edge that meets the line from 1 to 2. */
+  readonly groupsCrossed: (x1: number, y1: number, x2: number, y2: number) => readonly number[];
   /** Whether any edge meets the line from 1 to 2. */
   readonly crosses: (x1: number, y1: number, x2: number, y2: number) => boolean;
 }
@@ -43,6 +45,8 @@ export function indexRings(groups: readonly (readonly Float64Array[])[]): RingIn
     }
     return odd;
   };
+  const edgesIn = (x1: number, y1: number, x2: number, y2: number): readonly number[] =>
+    index.search(Math.min(x1, x2), Math.min(y1, y2), Math.max(x1, x2), Math.max(y1, y2));
   return {
     contains: (x, y) => oddGroups(x, y).size % 2 === 1,
     groupsRound: (x, y) => [...oddGroups(x, y)],
@@ -54,12 +58,31 @@ export function indexRings(groups: readonly (readonly Float64Array[])[]): RingIn
       }
       return [...near];
     },
+    groupsCrossed: (x1, y1, x2, y2) => {
+      const crossed = new Set<number>();
+      for (const e of edgesIn(x1, y1, x2, y2)) {
+        const group = groupOf[e]!;
+        if (!crossed.has(group) && segmentsMeet(x1, y1, x2, y2, ...edgeOf(edges, e))) crossed.add(group);
+      }
+      return [...crossed];
+    },
     crosses: (x1, y1, x2, y2) =>
-      index
-        .search(Math.min(x1, x2), Math.min(y1, y2), Math.max(x1, x2), Math.max(y1, y2))
-        .some((e) => segmentsMeet(x1, y1, x2, y2, ...edgeOf(edges, e))),
+      edgesIn(x1, y1, x2, y2).some((e) => segmentsMeet(x1, y1, x2, y2, ...edgeOf(edges, e))),
   };
 }
+
+/** A ring of 128 corners on a circle, the first one repeated. */
+export function circleRing(x: number, y: number, radius: number): Float64Array {
+  const ring = new Float64Array(2 * CIRCLE_CORNERS + 2);
+  for (let i = 0; i <= CIRCLE_CORNERS; i++) {
+    const angle = (2 * Math.PI * (i % CIRCLE_CORNERS)) / CIRCLE_CORNERS;
+    ring[2 * i] = x + radius * Math.cos(angle);
+    ring[2 * i + 1] = y + radius * Math.sin(angle);
+  }
+  return ring;
+}
+
+const CIRCLE_CORNERS = 128;
 
 /** Rings that lie in no other of the set. */
 export function outerRings(rings: readonly Float64Array[]): readonly Float64Array[] {
@@ -72,6 +95,7 @@ const NOTHING: RingIndex = {
   contains: () => false,
   groupsRound: () => [],
   groupsWithin: () => [],
+  groupsCrossed: () => [],
   crosses: () => false,
 };
 

@@ -1,4 +1,4 @@
-import type { Centreline, Hole, Layout, LayoutItem, Outline, Stroke } from '../layout/types.ts';
+import type { Centreline, Hole, Ignored, Layout, LayoutItem, Outline, Stroke } from '../layout/types.ts';
 import { isPattern, layerKey, matches } from '../runsheet/names.ts';
 import type { RunSheet } from '../runsheet/types.ts';
 import { CHIP_EDGE_NAME } from './defaults.ts';
@@ -11,6 +11,8 @@ export interface Selection {
   readonly strokes: readonly Stroke[];
   readonly holes: readonly Hole[];
   readonly outlines: readonly Outline[];
+  /** Unfilled and not round: no port and no channel, but one may stand in a channel. */
+  readonly ellipses: readonly Ignored[];
   readonly ignored: Tally;
   /** Names drawn but not read, with why: for messages about names that are not found. */
   readonly setAside: Map<string, string>;
@@ -45,6 +47,7 @@ export function selectItems(
   const strokes: Stroke[] = [];
   const holes: Hole[] = [];
   const outlines: Outline[] = [];
+  const ellipses: Ignored[] = [];
   const ignored = new Tally();
   const setAside = new Map<string, string>();
   for (const [kind, count] of Object.entries(layout.unread)) ignored.add(kind, count);
@@ -52,9 +55,12 @@ export function selectItems(
   const isChamberPart = chamberTest(sheet);
   const inside = edge !== null && sheet?.outline != null ? indexRings([edge.rings]) : null;
 
+  const note = (item: LayoutItem, why: string): void => {
+    if (item.name !== null && !setAside.has(item.name)) setAside.set(item.name, why);
+  };
   const leaveOut = (item: LayoutItem, kind: string, why: string): void => {
     ignored.add(kind);
-    if (item.name !== null && !setAside.has(item.name)) setAside.set(item.name, why);
+    note(item, why);
   };
   for (const item of layout.items) {
     if (edge?.ordinals.has(item.ordinal) || item.name === CHIP_EDGE_NAME) continue;
@@ -64,17 +70,25 @@ export function selectItems(
       leaveOut(item, 'in an ignored layer', 'its layer is set to ignore');
     } else if (isChamberPart(item)) {
       leaveOut(item, 'chamber or pillar', 'it is named under fields or pillars');
-    } else if (item.kind === 'ignored') {
+    } else if (item.kind === 'ignored' && item.reason !== 'ellipse') {
       leaveOut(item, item.reason, `it is a ${item.reason}`);
     } else {
       const kept = inside === null ? item : partInside(item, inside);
       if (kept === null) leaveOut(item, 'outside the outline', 'it lies outside the outline');
       else if (kept.kind === 'stroke') strokes.push(kept);
       else if (kept.kind === 'hole') holes.push(kept);
-      else outlines.push(kept);
+      else {
+        const isFilled = kept.kind === 'outline';
+        note(
+          kept,
+          isFilled ? 'it is filled, and only a stroke is a centreline' : 'it is an ellipse that is not round',
+        );
+        if (isFilled) outlines.push(kept);
+        else ellipses.push(kept);
+      }
     }
   }
-  return { strokes, holes, outlines, ignored, setAside };
+  return { strokes, holes, outlines, ellipses, ignored, setAside };
 }
 
 /** Elements by their exact name, groups without regard to case; patterns likewise. */
@@ -111,7 +125,7 @@ function nameTest(entries: readonly string[]): (name: string) => boolean {
   return (name) => exact.has(name) || patterns.some((pattern) => matches(pattern, name));
 }
 
-type Read = Stroke | Hole | Outline;
+type Read = Stroke | Hole | Outline | Ignored;
 
 /** The item without its centrelines that lie wholly outside; null when nothing is left. */
 function partInside(item: Read, rings: RingIndex): Read | null {
@@ -127,6 +141,7 @@ function partInside(item: Read, rings: RingIndex): Read | null {
       return touched ? item : null;
     }
     case 'outline':
+    case 'ignored':
       return item.rings.some((ring) => pointsMeet(ring, rings)) ? item : null;
     default:
       return item satisfies never;

@@ -9,7 +9,7 @@ import type {
 } from '../runsheet/types.ts';
 
 /** Where a value came from, printed beside it: the run sheet, the drawing, usual practice of a process, or a default. */
-export type Origin = 'run sheet' | 'drawing' | 'usual practice, no source' | 'default';
+export type Origin = 'run sheet' | 'drawing' | 'typical value, not from your maker' | 'default';
 
 export interface Sourced<T> {
   readonly value: T;
@@ -65,6 +65,8 @@ export interface Channel {
   /** In mm (drawing coordinates × unit), y down. */
   readonly centrelines: readonly Centreline[];
   readonly disguises: readonly string[];
+  /** The drawing says that it is a channel (`data-channel`). */
+  readonly dataChannel: boolean;
   readonly settings: ChannelEntry | null;
 }
 
@@ -106,16 +108,43 @@ export interface ChipLimits {
   readonly stiffnessPa: Sourced<number> | null;
 }
 
+/**
+ * Why a drawn area is taken for the outline of a channel: it is stroked too, a channel end or a port touches it or lies on it,
+ * it is a hairline round a port or another such line, there is no channel at all; or it is said to be a channel and has no stroke.
+ */
+export type OutlineReason = 'stroked' | 'end' | 'port' | 'hairline' | 'no-channels' | 'no-stroke';
+
+/** A drawn area that is the outline of a channel, not its centreline. */
+export interface OutlineFault {
+  readonly kind: 'filled-outline';
+  readonly name: string;
+  readonly xMm: number;
+  readonly yMm: number;
+  readonly reason: OutlineReason;
+  /** Names of the ports that touch it or lie on it. */
+  readonly ports: readonly string[];
+  /** Names of the channels that end on it, and where each does. */
+  readonly ends: readonly { readonly channel: string; readonly xMm: number; readonly yMm: number }[];
+}
+
+/** A drawn area in or across a channel that is no port: it is not in the model. */
+export interface Obstacle {
+  readonly name: string;
+  readonly ordinal: number;
+  /** Index into Chip.channels. */
+  readonly channel: number;
+  /** All of it lies in the etched area (a pillar); else it lies across a wall. */
+  readonly inside: boolean;
+  /** mm, first point repeated at the end. */
+  readonly rings: readonly Float64Array[];
+  /** The circle itself where it is one. */
+  readonly circle: { readonly xMm: number; readonly yMm: number; readonly radiusMm: number } | null;
+}
+
 /** A fault found while reading or laying out: becomes a finding of findings/. */
 export type ReadingFault =
   | { readonly kind: 'unsized-stroke'; readonly name: string; readonly xMm: number; readonly yMm: number }
-  | {
-      readonly kind: 'filled-outline';
-      readonly name: string;
-      readonly xMm: number;
-      readonly yMm: number;
-      readonly stroked: boolean;
-    }
+  | OutlineFault
   | { readonly kind: 'assumed-scale'; readonly reason: string }
   | {
       readonly kind: 'missing-depth';
@@ -146,9 +175,12 @@ export interface Chip {
   /** Channels that have a width; unsized strokes are faults only. */
   readonly channels: readonly Channel[];
   readonly ports: readonly Port[];
+  readonly obstacles: readonly Obstacle[];
   readonly edge: ChipEdge | null;
   readonly sizeMm: readonly [number, number] | null;
   readonly ignored: Readonly<Record<string, number>>;
+  /** Lines of what is drawn and not read, for the picture; mm, x0 y0 x1 y1 … */
+  readonly unreadLines: readonly Float64Array[];
   readonly faults: readonly ReadingFault[];
   readonly fluid: Fluid;
   readonly joinWithinMm: number;

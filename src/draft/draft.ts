@@ -1,9 +1,11 @@
 import { assembleChip } from '../chip/assemble.ts';
 import { DEFAULT_MAX_REYNOLDS } from '../chip/defaults.ts';
+import { sizesByPixel } from '../chip/pixel-sizes.ts';
 import type { Channel, Chip } from '../chip/types.ts';
 import type { Layout } from '../layout/types.ts';
 import { isPattern, layerKey } from '../runsheet/names.ts';
 import { formatMm } from '../runsheet/shown.ts';
+import { type PillarField, pillarFields } from './pillars.ts';
 import { commentText, isDraftable, keyText } from './yaml-text.ts';
 
 export interface DraftInput {
@@ -24,30 +26,31 @@ const MOST_BYTES = 900_000;
  */
 export function draftRunSheet({ layout, file, tool }: DraftInput): string {
   const chip = assembleChip({ layout, sheet: null, file, layoutSha256: '0'.repeat(64) });
+  const fields = pillarFields(chip);
   const whole = [
-    ...head(chip, layout, tool),
+    ...head(chip, layout, tool, fields),
     ...layerLines(chip, layout),
-    ...portLines(chip),
+    ...portLines(chip, layout, fields),
     ...channelLines(chip, layout),
-    ...rest(chip),
+    ...rest(chip, fields),
   ].join('\n');
   if (Buffer.byteLength(whole) <= MOST_BYTES) return `${whole}\n`;
   const short = [
-    ...head(chip, layout, tool),
+    ...head(chip, layout, tool, fields),
     ...layerLines(chip, layout),
-    ...portLines(chip),
+    ...portLines(chip, layout, fields),
     'channels: # the drawing has too many to list here; give windows to those that need them, * matches any run of characters',
     ...WINDOW_EXAMPLE,
-    ...rest(chip),
+    ...rest(chip, fields),
   ].join('\n');
   return `${short}\n`;
 }
 
-function head(chip: Chip, layout: Layout, tool: string): string[] {
+function head(chip: Chip, layout: Layout, tool: string, fields: readonly PillarField[]): string[] {
   const { edge } = chip;
   const unit = layout.unitStated
     ? `# unit: 1 mm # size of one unit of the drawing; not needed, the drawing says it (${commentText(layout.unitReason)})`
-    : 'unit: # fill in: size of one unit of the drawing, for example 1 mm; the drawing does not say it';
+    : `unit: # fill in: size of one unit of the drawing, for example 1 mm; the drawing does not say it: ${sizesByPixel(chip)}`;
   const sides =
     edge === null || !layout.unitStated
       ? '# size: [76 mm, 26 mm] # outer size of the chip, checked against the chip edge'
@@ -68,7 +71,7 @@ function head(chip: Chip, layout: Layout, tool: string): string[] {
     edge === null
       ? 'outline: # fill in: name of the shape that is the chip edge; without one the edge rules are not run'
       : `# outline: ${edgeName(edge.name)} # the chip edge found; when given here, only what lies inside it is read`,
-    ...portsLayerLine(chip, layout),
+    ...portsLayerLine(chip, layout, fields),
     '# ignore: ["dim-*"] # names of elements or layers that are not read; * matches any run of characters',
     '# join_within: 1 um # slack of every "on" and "inside" when channels are joined',
     '# joints: resolved # corners and junctions add resistance of their own; or centreline: they do not',
@@ -84,16 +87,27 @@ function edgeName(name: string): string {
   return isDraftable(name) ? keyText(name) : '…';
 }
 
-function portsLayerLine(chip: Chip, layout: Layout): string[] {
+function portsLayerLine(chip: Chip, layout: Layout, fields: readonly PillarField[]): string[] {
+  const pillars = new Set(fields.flatMap((field) => field.pillars));
   const names = new Set<string>();
-  for (const { ordinal } of chip.ports) names.add(layout.items[ordinal].groups.at(-1) ?? '');
+  for (const port of chip.ports) {
+    if (!pillars.has(port)) names.add(layout.items[port.ordinal].groups.at(-1) ?? '');
+  }
   const [only] = names;
   if (names.size !== 1 || only === undefined || only === '' || !isDraftable(only)) {
     return ['# ports_layer: holes # only circles of this layer are ports'];
   }
-  return [
-    `# ports_layer: ${keyText(only)} # only circles of this layer are ports; all that were found lie in it`,
-  ];
+  const isApart = [...pillars].every(({ ordinal }) =>
+    layout.items[ordinal].groups.every((group) => layerKey(group) !== layerKey(only)),
+  );
+  if (pillars.size > 0 && isApart) {
+    const where = fields.map(({ channel }) => commentText(channel.name)).join(', ');
+    return [
+      `ports_layer: ${keyText(only)} # only circles of this layer are ports; assumed, for the ${pillars.size} circles within ${where} look like pillars`,
+    ];
+  }
+  const all = pillars.size > 0 ? 'all that look like ports' : 'all that were found';
+  return [`# ports_layer: ${keyText(only)} # only circles of this layer are ports; ${all} lie in it`];
 }
 
 /** A layer as drawn: the outermost named group round its channels. */
@@ -147,8 +161,10 @@ function layerLine({ name, inner, channels, withDepth }: DrawnLayer): string {
   return `  ${keyText(name)}: {} # fill in: { depth: 50 um }; ${about}`;
 }
 
-function portLines(chip: Chip): string[] {
-  const lines = chip.ports.map(({ name, drawnName, xMm, yMm, radiusMm }) => {
+function portLines(chip: Chip, layout: Layout, fields: readonly PillarField[]): string[] {
+  const pillars = new Set(fields.flatMap((field) => field.pillars));
+  const ports = chip.ports.filter((port) => !pillars.has(port));
+  const lines = ports.map(({ name, drawnName, xMm, yMm, radiusMm }) => {
     const place = `${formatMm(2 * radiusMm)} mm hole at (${formatMm(xMm)}, ${formatMm(yMm)}) mm`;
     if (drawnName === null)
       return `# ${commentText(name)}: ${place} has no name; give it one in the drawing (data-name, label, title or id), then set it here`;
@@ -160,8 +176,21 @@ function portLines(chip: Chip): string[] {
     'ports: # { pressure: 12 kPa }, { flow: 2 uL/min } (into the chip is positive), { head: 40 mm }, open or sealed; * matches any run of characters',
     '  # with tubing: { pressure: 12 kPa, tubing: { bore: 0.5 mm, length: 300 mm }, expect: in }; several pieces: tubing: [{ … }, { …, temperature: 22 degC }]',
     ...lines,
+    ...fields.map((field) => pillarLine(field, layout)),
     '',
   ];
+}
+
+function pillarLine({ channel, pillars }: PillarField, layout: Layout): string {
+  const sizes = [...new Set(pillars.map(({ radiusMm }) => formatMm(2 * radiusMm)))];
+  const layers = [...new Set(pillars.flatMap(({ ordinal }) => layout.items[ordinal].groups.at(-1) ?? []))];
+  const inLayers = layers.length === 0 ? '' : ` (in ${layers.slice(0, 4).map(commentText).join(', ')})`;
+  const named = pillars.flatMap(({ drawnName }) => drawnName ?? []);
+  const names =
+    named.length === 0
+      ? ''
+      : `: ${named.slice(0, 4).map(commentText).join(', ')}${named.length > 4 ? ' …' : ''}`;
+  return `# ${counted(pillars.length, 'circle')} of ${sizes.slice(0, 4).join(', ')} mm${inLayers} within ${commentText(channel.name)}, where no channel ends, are taken for pillars and not listed${names}; ports_layer: tells ports from pillars`;
 }
 
 const WINDOW_EXAMPLE = [
@@ -202,8 +231,12 @@ function channelLines(chip: Chip, layout: Layout): string[] {
   ];
 }
 
-function rest(chip: Chip): string[] {
-  const names = chip.ports.flatMap(({ drawnName }) => drawnName ?? []).filter(isDraftable);
+function rest(chip: Chip, fields: readonly PillarField[]): string[] {
+  const pillars = new Set(fields.flatMap((field) => field.pillars));
+  const names = chip.ports
+    .filter((port) => !pillars.has(port))
+    .flatMap(({ drawnName }) => drawnName ?? [])
+    .filter(isDraftable);
   const by = names[0] === undefined ? 'feed' : keyText(names[0]);
   const channel = chip.channels
     .flatMap(({ drawnName }) => drawnName ?? [])

@@ -2,7 +2,8 @@ import { madeUpNames } from '../chip/accept.ts';
 import type { AcceptEntry } from '../runsheet/types.ts';
 import { acceptFindings } from './accept.ts';
 import type { FindingContext } from './context.ts';
-import type { Rule } from './rule.ts';
+import { isAllOutlines } from './outlines.ts';
+import type { Rule, RuleOutcome } from './rule.ts';
 import { RULES } from './rules.ts';
 import type { Finding, FindingReport, NotRun, Severity } from './types.ts';
 import { showFor } from './words.ts';
@@ -16,8 +17,10 @@ import { showFor } from './words.ts';
 export function findAll(context: FindingContext, rules: readonly Rule[] = RULES): FindingReport {
   const raw: Finding[] = [];
   const skipped: NotRun[] = [];
+  const hasChannels = !isAllOutlines(context);
   for (const rule of rules) {
-    const outcome = rule.run(context);
+    const runs = hasChannels || rule.withoutChannels === true;
+    const outcome = runs ? rule.run(context) : withoutChannels(rule);
     for (const finding of outcome.findings) raw.push(finding);
     for (const entry of outcome.notRun) skipped.push(entry);
   }
@@ -53,6 +56,12 @@ export function settleAccepts(reports: readonly FindingReport[]): FindingReport[
 /** Several entries may stand in one line. */
 function entryKey({ line, rule, at }: AcceptEntry): string {
   return `${line} ${rule} ${at}`;
+}
+
+/** Where every channel is drawn as an outline, that is the fault: what else would be found follows from it. */
+function withoutChannels({ names }: Rule): RuleOutcome {
+  const why = 'there is no channel, only outlines (filled-outline)';
+  return { findings: [], notRun: names.map((rule) => ({ rule, why })) };
 }
 
 function toReport(findings: readonly Finding[], notRun: readonly NotRun[]): FindingReport {

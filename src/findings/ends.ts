@@ -1,6 +1,7 @@
 import { formatMm } from '../runsheet/shown.ts';
 import type { FindingContext } from './context.ts';
 import { endPlace, type NearMiss, nearMisses, openEnds } from './misses.ts';
+import { endsOnOutline } from './outlines.ts';
 import { found, type Rule, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
 import { distanceText, moveText, placeText } from './words.ts';
@@ -12,6 +13,7 @@ export const endRules: readonly Rule[] = [
     run: (context) => {
       const { chip, network } = context;
       const { pieces } = network.trace.near;
+      const onOutline = endsOnOutline(context);
       const missing = new Set<number>();
       for (const { end, missedEnd } of nearMisses(context)) {
         missing.add(end);
@@ -19,7 +21,7 @@ export const endRules: readonly Rule[] = [
       }
       return found(
         openEnds(network)
-          .filter((end) => !missing.has(end))
+          .filter((end) => !missing.has(end) && !onOutline(endPlace(network, end)))
           .map((end) => {
             const { name } = chip.channels[pieces.centrelineChannel[end >> 1]];
             const { x, y } = endPlace(network, end);

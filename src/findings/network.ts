@@ -1,6 +1,7 @@
 import type { Chip } from '../chip/types.ts';
 import type { FlowPart, FlowState } from '../solve/types.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
+import { partsOnOutlines } from './outlines.ts';
 import { middleOfReach } from './reaches.ts';
 import { found, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
@@ -30,9 +31,10 @@ function ifAnyPortIsSet(
 function strayChannels(context: FindingContext, flow: FlowState): Finding[] {
   const { chip, network } = context;
   const reachesByPart = partReaches(context);
+  const onOutlines = partsOnOutlines(context);
   return flow.parts.flatMap((part, p) => {
     const reaches = reachesByPart[p] ?? [];
-    if (reaches.length === 0 || part.ports.some((port) => drives(chip, port))) return [];
+    if (onOutlines.has(p) || reaches.length === 0 || part.ports.some((port) => drives(chip, port))) return [];
     const channels = [...new Set(reaches.map((reach) => chip.channels[network.reachChannel[reach]].name))];
     const ports = part.ports.map((port) => chip.ports[port].name);
     const verb = channels.length === 1 ? 'is' : 'are';
@@ -56,7 +58,9 @@ function strayChannels(context: FindingContext, flow: FlowState): Finding[] {
 
 /** One finding per connected part whose pressures are fixed by nothing, or by ports that contradict each other. */
 function noReferences(context: FindingContext, flow: FlowState): Finding[] {
-  return flow.parts.flatMap((part) => {
+  const onOutlines = partsOnOutlines(context);
+  return flow.parts.flatMap((part, p) => {
+    if (onOutlines.has(p)) return [];
     switch (part.status) {
       case 'no-reference':
       case 'flows-do-not-add-up':

@@ -2,6 +2,7 @@ import type { Port } from '../chip/types.ts';
 import { closestPoints } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 import { nearMisses } from './misses.ts';
+import { portsOnOutlines } from './outlines.ts';
 import { gapToHole, lineOf } from './painted.ts';
 import { portGridFaults } from './port-grid.ts';
 import { found, isBelow, limitRule, type Rule, toFinding } from './rule.ts';
@@ -64,10 +65,12 @@ const portMeetings = oncePerContext(({ network, chip }): readonly PortMeetings[]
 function loosePorts(context: FindingContext): Finding[] {
   const { chip, network } = context;
   const missed = new Set(nearMisses(context).map(({ port }) => port));
+  const onOutlines = portsOnOutlines(context);
   const meetings = portMeetings(context);
   const findings: Finding[] = [];
   chip.ports.forEach((port, p) => {
     if (meetings[p].channels.size > 0 || network.nodePort[network.portNode[p]] !== p || missed.has(p)) return;
+    if (onOutlines.has(port.name)) return;
     const nearest = nearestPiece(context, port);
     const near =
       nearest === null

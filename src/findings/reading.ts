@@ -1,4 +1,6 @@
-import type { ReadingFault } from '../chip/types.ts';
+import { OBSTACLE_KIND } from '../chip/defaults.ts';
+import { sizesByPixel } from '../chip/pixel-sizes.ts';
+import type { Chip, ReadingFault } from '../chip/types.ts';
 import { UNUSABLE_KEYS } from '../runsheet/names.ts';
 import { middleOfChannel } from './centrelines.ts';
 import type { FindingContext } from './context.ts';
@@ -10,15 +12,14 @@ import { countText, distanceText, keyText, listText } from './words.ts';
 export const readingRules: readonly Rule[] = [
   {
     names: ['unsized-stroke'],
+    withoutChannels: true,
     run: ({ chip }) => found(chip.faults.filter(isOf('unsized-stroke')).map(unsizedStroke)),
   },
   {
-    names: ['filled-outline'],
-    run: ({ chip }) => found(chip.faults.filter(isOf('filled-outline')).map(filledOutline)),
-  },
-  {
     names: ['assumed-scale'],
-    run: ({ chip }) => found(chip.faults.filter(isOf('assumed-scale')).map(assumedScale)),
+    withoutChannels: true,
+    run: ({ chip }) =>
+      found(chip.faults.filter(isOf('assumed-scale')).map((fault) => assumedScale(fault, chip))),
   },
   {
     names: ['missing-depth'],
@@ -30,7 +31,7 @@ export const readingRules: readonly Rule[] = [
   },
   { names: ['unset-port'], run: (context) => found(unsetPorts(context)) },
   { names: ['default-depth'], run: (context) => found(defaultDepths(context)) },
-  { names: ['ignored-shapes'], run: (context) => found(ignoredShapes(context)) },
+  { names: ['ignored-shapes'], withoutChannels: true, run: (context) => found(ignoredShapes(context)) },
 ];
 
 type FaultOf<K extends ReadingFault['kind']> = Extract<ReadingFault, { readonly kind: K }>;
@@ -48,20 +49,10 @@ function unsizedStroke({ name, xMm, yMm }: FaultOf<'unsized-stroke'>): Finding {
   });
 }
 
-function filledOutline({ name, xMm, yMm, stroked }: FaultOf<'filled-outline'>): Finding {
-  const why = stroked ? 'stroked too' : 'a channel ends on it';
-  return toFinding('filled-outline', 'blocker', {
-    message: `${name} is drawn as a filled outline (${why}); only strokes along a centreline are channels, so it was left out`,
-    fix: `redraw ${name} as one line along its middle with its width as the stroke width, or name it under ignore: in the run sheet if it is no channel`,
-    at: { xMm, yMm },
-    names: [name],
-  });
-}
-
-function assumedScale({ reason }: FaultOf<'assumed-scale'>): Finding {
+function assumedScale({ reason }: FaultOf<'assumed-scale'>, chip: Chip): Finding {
   return toFinding('assumed-scale', 'blocker', {
-    message: `the drawing states no physical size (${reason}); it was read at 25.4/96 mm a unit, which is a guess`,
-    fix: 'give the drawing its width and height in mm, or write in the run sheet unit: 1 mm (what one drawing unit is) or size: [76 mm, 26 mm] (the sides of the chip edge)',
+    message: `the drawing states no physical size (${reason}); it was read at 96 pixels per inch, which is a guess: ${sizesByPixel(chip)}`,
+    fix: 'give the drawing its width and height in mm, or write in the run sheet unit: 1 mm (what one drawing unit is: one of the two above, or 1 mm where it was drawn in mm) or size: [76 mm, 26 mm] (the sides of the chip edge)',
     at: null,
     names: [],
   });
@@ -143,8 +134,9 @@ function defaultDepths({ chip }: FindingContext): Finding[] {
 
 function ignoredShapes({ chip, network }: FindingContext): Finding[] {
   const leftOut = leftOutWhole({ chip, network });
+  const { [OBSTACLE_KIND]: _, ...ignored } = chip.ignored;
   const counts = {
-    ...chip.ignored,
+    ...ignored,
     ...(leftOut.length > 0 ? { 'stroke along another': leftOut.length } : {}),
   };
   const kinds = Object.entries(counts)

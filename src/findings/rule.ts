@@ -7,6 +7,8 @@ import type { Finding, NotRun, Severity } from './types.ts';
 export interface Rule {
   /** The rules of the findings it can make, and of what it may report as not run. */
   readonly names: readonly string[];
+  /** It has something to say of a drawing whose channels are all drawn as outlines. */
+  readonly withoutChannels?: true;
   readonly run: (context: FindingContext) => RuleOutcome;
 }
 

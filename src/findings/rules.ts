@@ -5,6 +5,8 @@ import { flowRules } from './flow.ts';
 import { levelRules } from './level-sensitive.ts';
 import { networkRules } from './network.ts';
 import { notComputedRules } from './not-computed.ts';
+import { obstacleRules } from './obstacles.ts';
+import { outlineRules } from './outlines.ts';
 import { portRules } from './ports.ts';
 import { pressureRules } from './pressure.ts';
 import { pumpRules } from './pump-limit.ts';
@@ -21,6 +23,8 @@ import { windowRules } from './windows.ts';
 export const RULES: readonly Rule[] = [
   ...readingRules,
   ...notComputedRules,
+  ...outlineRules,
+  ...obstacleRules,
   ...wallRules,
   ...strokeRules,
   ...endRules,

@@ -3,6 +3,7 @@ import { meanRoofRise, risenResistanceFactor } from '../physics/roof.ts';
 import { formatNumber, formatShare } from '../runsheet/shown.ts';
 import { acrossMark, middleOfChannel } from './centrelines.ts';
 import type { FindingContext } from './context.ts';
+import { freeSpanMm } from './free-span.ts';
 import { middleOfReach, othersText, reachesOf, reachNames, worstReach } from './reaches.ts';
 import {
   found,
@@ -16,7 +17,16 @@ import {
   withoutLimit,
 } from './rule.ts';
 import type { Finding } from './types.ts';
-import { distanceText, leastText, limitText, listText, mostText, showFor, sizeAtMostText } from './words.ts';
+import {
+  countText,
+  distanceText,
+  leastText,
+  limitText,
+  listText,
+  mostText,
+  showFor,
+  sizeAtMostText,
+} from './words.ts';
 
 /** A channel's own section: can it be made, does its roof stay up, does its relief stand. */
 export const sectionRules: readonly Rule[] = [
@@ -46,17 +56,29 @@ export const sectionRules: readonly Rule[] = [
     'max_width_to_depth',
     ({ chip }) => chip.limits.maxWidthToDepth,
     ({ chip }, limit) =>
-      perChannel(chip.channels, (channel) => {
+      perChannel(chip.channels, (channel, c) => {
         const { name, ductWidthMm, depthMm } = channel;
-        const ratio = ductWidthMm / depthMm;
+        if (!isAbove(ductWidthMm / depthMm, limit.value)) return null;
+        const pillars = chip.obstacles.filter(({ channel: its, inside }) => its === c && inside);
+        // An isotropic etch widens the way between pillars as it widens the channel.
+        const spanMm =
+          pillars.length === 0
+            ? ductWidthMm
+            : ductWidthMm - channel.drawnWidthMm + freeSpanMm(channel, pillars, chip.ports);
+        const ratio = spanMm / depthMm;
         if (!isAbove(ratio, limit.value)) return null;
         const severity = isAbove(ratio, 2 * limit.value) ? 'blocker' : 'caution';
         const at = middleOfChannel(channel);
         const drawnAtMost = channel.drawnWidthMm - (ductWidthMm - limit.value * depthMm);
+        const between =
+          pillars.length === 0
+            ? ''
+            : ` between its ${countText(pillars.length, 'pillar')}, where it is widest,`;
+        const closer = pillars.length === 0 ? '' : 'set its pillars closer, ';
         const narrower = drawnAtMost > 0 ? `narrow ${name} to ${sizeAtMostText(drawnAtMost)}, ` : '';
         return toFinding('roof-span', severity, {
-          message: `the roof of ${name} spans ${formatNumber(ratio)} times its depth (${distanceText(ductWidthMm)} over ${distanceText(depthMm)}) and may sag; the limit is ${limitText(`${formatNumber(limit.value)} times`, limit)}`,
-          fix: `${narrower}etch it ${leastText(ductWidthMm / limit.value)} deep or deeper, or split it into narrower lanes`,
+          message: `the roof of ${name}${between} spans ${formatNumber(ratio)} times its depth (${distanceText(spanMm)} over ${distanceText(depthMm)}) and may sag; the limit is ${limitText(`${formatNumber(limit.value)} times`, limit)}`,
+          fix: `${closer}${narrower}etch it ${leastText(spanMm / limit.value)} deep or deeper, or split it into narrower lanes`,
           at,
           names: [name],
           measure: { value: ratio, limit: limit.value, unit: '' },
@@ -89,7 +111,10 @@ export const sectionRules: readonly Rule[] = [
   { names: ['isotropic-etch'], run: (context) => found(isotropicEtch(context)) },
 ];
 
-function perChannel(channels: readonly Channel[], look: (channel: Channel) => Finding | null): Finding[] {
+function perChannel(
+  channels: readonly Channel[],
+  look: (channel: Channel, index: number) => Finding | null,
+): Finding[] {
   return channels.map(look).filter((finding) => finding !== null);
 }
 

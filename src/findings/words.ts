@@ -43,7 +43,7 @@ export function placeText(xMm: number, yMm: number): string {
   return `(${formatMm(xMm)}, ${formatMm(yMm)} mm)`;
 }
 
-/** A limit with where it comes from, when that is not the run sheet: "20 µm (usual practice, no source)". */
+/** A limit with where it comes from, when that is not the run sheet: "20 µm (typical value, not from your maker)". */
 export function limitText(text: string, { origin }: Pick<Sourced<unknown>, 'origin'>): string {
   return origin === 'run sheet' ? text : `${text} (${origin})`;
 }

@@ -167,7 +167,8 @@ function stretchWithin(
   return from <= to ? [from, to] : null;
 }
 
-function addDiscStretch(
+/** The same for a disc; (dx, dy) is the unit vector from a to b, `span` their distance. */
+export function addDiscStretch(
   into: number[],
   cx: number,
   cy: number,

@@ -5,7 +5,7 @@
 import { InputError } from '../errors.ts';
 import { PX_MM } from '../svg/lengths.ts';
 import { stretches } from '../svg/matrix.ts';
-import type { Clip, Group, Shape, SvgDrawing } from '../svg/types.ts';
+import type { Clip, Group, Shape, SvgDrawing, Undrawn } from '../svg/types.ts';
 import { quoted, ValueError } from '../svg/value-error.ts';
 import { type Flattened, flatten, MAX_COORDINATE, MAX_PIECES, type PieceBudget } from './flatten.ts';
 import { type Circle, ROUNDNESS, roundRing } from './roundness.ts';
@@ -23,13 +23,30 @@ export function layOut(drawing: SvgDrawing, where: string): Layout {
     zeroLength: 0,
   };
   const items: LayoutItem[] = [];
+  const undrawn: Undrawn[] = [...drawing.undrawn];
   for (const shape of drawing.shapes) {
     const item = toItemOrExplain(shape, laying, where);
     if (item !== null) items.push(item);
+    else if (shape.name !== null) undrawn.push({ kind: 'shape', name: shape.name, why: whyNothing(shape) });
   }
   const { unitMm, unitStated, unitReason, widthMm, heightMm, unread } = drawing;
   const zeroLength = laying.zeroLength === 0 ? {} : { 'subpath without length': laying.zeroLength };
-  return { unitMm, unitStated, unitReason, widthMm, heightMm, items, unread: { ...unread, ...zeroLength } };
+  return {
+    unitMm,
+    unitStated,
+    unitReason,
+    widthMm,
+    heightMm,
+    items,
+    undrawn,
+    unread: { ...unread, ...zeroLength },
+  };
+}
+
+function whyNothing({ style, tag }: Shape): string {
+  if (style.zeroWidth) return 'its stroke is 0 wide';
+  const isVisible = style.stroked || (style.filled && tag !== 'line');
+  return isVisible ? 'it has no length' : 'it has neither stroke nor fill';
 }
 
 /** A transform whose stretches differ by no more than this share is a similarity. */
@@ -87,10 +104,9 @@ function roundItem(shape: Shape, drawn: Drawn, laying: Laying): LayoutItem | nul
   const { filled, dashed } = shape.style;
   const stroked = shape.style.stroked && !dashed;
   if (shape.dataChannel && (filled || stroked)) {
-    // Said to be a channel, but filled: the outline of one, not its centreline.
-    return filled
-      ? toOutline(shape, drawn, laying, stroked)
-      : toStroke(shape, drawn, flattenShape(shape, laying), laying);
+    return stroked
+      ? toStroke(shape, drawn, flattenShape(shape, laying), laying)
+      : toOutline(shape, drawn, laying, false);
   }
   if (!filled && !stroked) return dashed ? toIgnored(shape, drawn, laying, 'dashed stroke') : null;
   const circle = drawnCircle(shape);
@@ -106,14 +122,22 @@ function pathItem(shape: Shape, drawn: Drawn, laying: Laying): LayoutItem | null
   const flat = flattenShape(shape, laying);
   if (flat.subpaths.length === 0) return null;
   // A fill closes what it fills; with a stroke, only what is drawn closed is closed.
-  const isClosed = flat.subpaths.every((subpath) => subpath.closed || (!stroked && subpath.endsMeet));
-  if (filled && isClosed) {
-    const circle = flat.subpaths.length === 1 ? roundRing(flat.subpaths[0].points) : null;
-    return circle !== null ? toHole(drawn, circle, true, stroked) : outlineOf(drawn, flat, stroked);
+  const isClosed = stroked
+    ? flat.subpaths.every(({ closed }) => closed)
+    : flat.subpaths.some(({ points }) => points.length >= LEAST_AREA);
+  // What is said to be a channel is one by its stroke, whatever fills it.
+  if (filled && isClosed && !(shape.dataChannel && stroked)) {
+    const [first, ...others] = flat.subpaths;
+    const mayBeRound = others.length === 0 && (first.closed || first.endsMeet) && !shape.dataChannel;
+    const circle = mayBeRound ? roundRing(first.points) : null;
+    return circle !== null ? toHole(drawn, circle, true, stroked) : outlineOf(shape, drawn, flat, stroked);
   }
   if (stroked) return toStroke(shape, drawn, flat, laying);
   return ignoredOf(drawn, flat, style.dashed ? 'dashed stroke' : 'fill');
 }
+
+/** Coordinates of the fewest points that enclose anything. */
+const LEAST_AREA = 6;
 
 function flattenShape(shape: Shape, laying: Laying): Flattened {
   const flat = flatten(shape.path, shape.toRoot, laying.budget);
@@ -145,6 +169,7 @@ function toStroke(shape: Shape, drawn: Drawn, flat: Flattened, laying: Laying): 
     linecap: shape.style.linecap,
     centrelines: flat.subpaths.map(({ points, closed, bendRadius }) => ({ points, closed, bendRadius })),
     dataDepth: shape.dataDepth ?? enclosingOf(shape, laying).dataDepth,
+    dataChannel: shape.dataChannel,
     disguises: disguisesOf(shape, flat),
   };
 }
@@ -206,15 +231,16 @@ function toHole(drawn: Drawn, circle: Circle, filled: boolean, stroked: boolean)
 }
 
 function toOutline(shape: Shape, drawn: Drawn, laying: Laying, stroked: boolean): Outline {
-  return outlineOf(drawn, flattenShape(shape, laying), stroked);
+  return outlineOf(shape, drawn, flattenShape(shape, laying), stroked);
 }
 
 function toIgnored(shape: Shape, drawn: Drawn, laying: Laying, reason: string): Ignored {
   return ignoredOf(drawn, flattenShape(shape, laying), reason);
 }
 
-function outlineOf(drawn: Drawn, flat: Flattened, stroked: boolean): Outline {
-  return { kind: 'outline', ...drawn, rings: flat.subpaths.map((subpath) => subpath.points), stroked };
+function outlineOf({ dataChannel }: Shape, drawn: Drawn, flat: Flattened, stroked: boolean): Outline {
+  const rings = flat.subpaths.map((subpath) => subpath.points);
+  return { kind: 'outline', ...drawn, rings, stroked, dataChannel };
 }
 
 function ignoredOf(drawn: Drawn, flat: Flattened, reason: string): Ignored {

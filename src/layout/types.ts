@@ -1,3 +1,5 @@
+import type { Undrawn } from '../svg/types.ts';
+
 /**
  * The layout in drawing units (root user units, y down), before any run sheet is known.
  * Curves are already cut into straight pieces; each piece keeps its curve's bend radius.
@@ -29,6 +31,8 @@ export interface Stroke extends Drawn {
   readonly centrelines: readonly Centreline[];
   /** `data-depth` of the element, else of the nearest group that has one, as written. */
   readonly dataDepth: string | null;
+  /** Said to be a channel (`data-channel`), whatever it looks like. */
+  readonly dataChannel: boolean;
   readonly disguises: readonly ('clip-path' | 'mask' | 'opacity' | 'marker' | 'filter')[];
 }
 
@@ -42,14 +46,16 @@ export interface Hole extends Drawn {
   readonly stroked: boolean;
 }
 
-/** A closed shape that is filled and not round: never a centreline. */
+/** A shape that is filled and not round, closed by its fill where it is not drawn closed: never a centreline. */
 export interface Outline extends Drawn {
   readonly kind: 'outline';
   readonly rings: readonly Float64Array[];
   readonly stroked: boolean;
+  /** Said to be a channel (`data-channel`), but without a stroke it has no width. */
+  readonly dataChannel: boolean;
 }
 
-/** Drawn and not read: text, images, dashed strokes, open fills … Geometry kept, for a chip edge may be among them. */
+/** Drawn and not read: text, images, dashed strokes … Geometry kept, for a chip edge may be among them. */
 export interface Ignored extends Drawn {
   readonly kind: 'ignored';
   /** text, image, dashed stroke, fill … : the key in the count of ignored shapes. */
@@ -67,6 +73,8 @@ export interface Layout {
   readonly heightMm: number | null;
   /** In document order. */
   readonly items: readonly LayoutItem[];
+  /** Named shapes and groups that are not drawn; a group may be listed that also holds what is drawn. */
+  readonly undrawn: readonly Undrawn[];
   /** Counts of things passed over that have no geometry of their own. */
   readonly unread: Readonly<Record<string, number>>;
 }

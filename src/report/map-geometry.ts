@@ -15,7 +15,7 @@ export interface Box {
  */
 export interface ChipGeometry {
   readonly chip: Chip;
-  /** What the maps must hold: strips, holes and the chip edge. */
+  /** What the maps must hold: strips, holes and the chip edge; all that is drawn where no channel was read. */
   readonly bounds: Box;
   readonly pieceCount: number;
   /** x1 y1 x2 y2 of each piece. */
@@ -60,6 +60,9 @@ export function chipGeometry(chip: Chip): ChipGeometry {
   }
   for (const ring of chip.edge?.rings ?? []) {
     for (let i = 0; i < ring.length; i += 2) bounds.add(ring[i], ring[i + 1], ring[i], ring[i + 1]);
+  }
+  for (const line of chip.channels.length > 0 ? [] : chip.unreadLines) {
+    for (let i = 0; i < line.length; i += 2) bounds.add(line[i], line[i + 1], line[i], line[i + 1]);
   }
   return {
     chip,

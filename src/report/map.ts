@@ -1,4 +1,5 @@
 import { formatNumber, type Shown, type Unit } from '../runsheet/shown.ts';
+import { clippedLine } from './clipped-line.ts';
 import {
   COLOUR_STEPS,
   type ColourScale,
@@ -33,6 +34,17 @@ export interface MapHole {
   readonly y: number;
   readonly radiusMm: number;
 }
+
+export interface MapUnread {
+  /** Lines, cut off at the figure. */
+  readonly under: readonly (readonly number[])[];
+  /** Rings of what stands in a channel. */
+  readonly over: readonly (readonly number[])[];
+}
+
+/** Looks of what was not read. */
+export const PALE_LINE = '#c4c4c4';
+export const PALE_FILL = '#e9e9e9';
 
 export interface MapLabel {
   readonly kind: 'port' | 'reach' | 'finding';
@@ -76,6 +88,8 @@ export interface MapDrawing {
   readonly ground: readonly MapStroke[];
   readonly reaches: readonly MapReach[];
   readonly holes: readonly MapHole[];
+  /** What is drawn and was not read, pale: under the channels, and (obstacles) on them. */
+  readonly unread: MapUnread;
   /** Exact places of findings, numbered from 1 as in the list; the number itself is a label. */
   readonly markers: readonly { readonly number: number; readonly x: number; readonly y: number }[];
   readonly labels: readonly MapLabel[];
@@ -143,6 +157,7 @@ export function drawMap(one: ReportedCase, geometry: ChipGeometry, options: MapO
   const unit = one.show.unit(QUANTITY_SHOWN[options.quantity], largestOf(values));
   const markers = options.findingNumbers ? findingMarkers(one, frame) : [];
   const labels = labelsOf(one, geometry, frame, holes, markers, values, unit, options);
+  const unread = unreadOf(geometry, frame);
   return {
     quantity: options.quantity,
     widthMm: frame.figureWidthMm,
@@ -152,13 +167,14 @@ export function drawMap(one: ReportedCase, geometry: ChipGeometry, options: MapO
     ground: groundStrokes(geometry, frame),
     reaches: reachStrokes(one, frame, values, scaleOfColour, options.quantity),
     holes,
+    unread,
     markers,
     labels: labels.placed,
     unlabelled: labels.unlabelled,
     unnamedPorts: labels.unnamedPorts,
     scaleBar: scaleBarOf(frame, options),
     legend: scaleOfColour === null ? null : legendOf(scaleOfColour, unit, values, frame, options),
-    caption: captionOf(frame),
+    caption: captionOf(frame, unread),
   };
 }
 
@@ -244,6 +260,27 @@ function groundStrokes({ chip }: ChipGeometry, frame: Frame): MapStroke[] {
       cap: channel.linecap,
     })),
   );
+}
+
+/** Points drawn of what was not read: a lavish title block must not make the picture heavy. */
+const UNREAD_BOUND = 50_000;
+
+function unreadOf({ chip }: ChipGeometry, frame: Frame): MapUnread {
+  const area = { x: 0, y: 0, width: frame.figureWidthMm, height: frame.figureHeightMm - frame.footMm };
+  let left = UNREAD_BOUND;
+  const fits = (line: Float64Array): boolean => {
+    left -= line.length / 2;
+    return left >= 0;
+  };
+  const over = chip.obstacles
+    .flatMap(({ rings }) => rings)
+    .filter(fits)
+    .map((ring) => thinned(frame.points(ring)));
+  const under = chip.unreadLines
+    .filter(fits)
+    .flatMap((line) => clippedLine(frame.points(line), area))
+    .map(thinned);
+  return { under, over };
 }
 
 function reachStrokes(
@@ -619,8 +656,8 @@ export function mapNotes({ caption, unlabelled, unnamedPorts }: MapDrawing): str
   return missing.length === 0 ? caption : `${caption} No room for the names of ${missing.join(' and ')}.`;
 }
 
-function captionOf(frame: Frame): string {
+function captionOf(frame: Frame, { under, over }: MapUnread): string {
   const ratio =
     frame.scale >= 1 ? `${formatNumber(frame.scale, 3)} : 1` : `1 : ${formatNumber(1 / frame.scale, 3)}`;
-  return `As drawn, seen from the channel side. Scale ${ratio}; strips thinner than 0.3 mm on paper are drawn 0.3 mm wide.`;
+  return `As drawn, seen from the channel side. Scale ${ratio}; strips thinner than 0.3 mm on paper are drawn 0.3 mm wide.${under.length + over.length === 0 ? '' : ' Pale: drawn, but not read.'}`;
 }

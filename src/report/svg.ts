@@ -1,4 +1,13 @@
-import { drawMap, type MapDrawing, type MapLabel, type MapStroke, mapNotes, QUANTITY_TITLES } from './map.ts';
+import {
+  drawMap,
+  type MapDrawing,
+  type MapLabel,
+  type MapStroke,
+  mapNotes,
+  PALE_FILL,
+  PALE_LINE,
+  QUANTITY_TITLES,
+} from './map.ts';
 import { chipGeometry } from './map-geometry.ts';
 import { cleanText, displayWidth } from './plain-text.ts';
 import type { MapQuantity } from './reach-values.ts';
@@ -44,9 +53,11 @@ export function svgPicture(one: ReportedCase, options: SvgOptions): string {
     `<title>${escapeXml(title)}</title>\n`,
     `<desc>${escapeXml(`${verdictLine(one.part.verdict, one.part.counts)}. ${mapNotes(drawing)}`)}</desc>\n`,
     `<rect width="${mm(drawing.widthMm)}" height="${mm(height)}" fill="#ffffff"/>\n`,
+    ...unreadLines(drawing),
     ...edge(drawing),
     ...ground(drawing),
     ...reaches(drawing, one),
+    ...obstacles(drawing),
     ...holes(drawing, one),
     ...labels(drawing, one),
     ...foot(drawing),
@@ -59,6 +70,20 @@ function edge({ edge: rings }: MapDrawing): string[] {
   return rings.map(
     (ring) => `<path d="${pathData(ring)}" fill="none" stroke="#606060" stroke-width="0.25"/>\n`,
   );
+}
+
+function unreadLines({ unread }: MapDrawing): string[] {
+  if (unread.under.length === 0) return [];
+  const data = unread.under.map(pathData).join('');
+  return [`<path d="${data}" fill="none" stroke="${PALE_LINE}" stroke-width="0.2"/>\n`];
+}
+
+function obstacles({ unread }: MapDrawing): string[] {
+  if (unread.over.length === 0) return [];
+  const data = unread.over.map(pathData).join('');
+  return [
+    `<path d="${data}" fill="${PALE_FILL}" fill-rule="evenodd" stroke="${PALE_LINE}" stroke-width="0.15"/>\n`,
+  ];
 }
 
 function ground({ ground: strokes }: MapDrawing): string[] {

@@ -52,7 +52,7 @@ export const RULE_MEASURES: ReadonlyMap<string, RuleMeasure> = new Map([
         'unset-port',
         'default-depth',
       ],
-      ...['ignored-shapes', 'no-edge', 'isotropic-etch', 'disguised-stroke'],
+      ...['ignored-shapes', 'no-edge', 'isotropic-etch', 'disguised-stroke', 'obstacle'],
     ],
   ),
 ]);
@@ -63,6 +63,7 @@ export const UNACCEPTABLE_RULES: ReadonlySet<string> = new Set([
   'unsized-stroke',
   'missing-depth',
   'filled-outline',
+  'no-channel',
   'merged-walls',
   'double-stroke',
   'not-computed',

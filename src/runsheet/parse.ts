@@ -1,6 +1,7 @@
 import { createHash } from 'node:crypto';
 import * as v from 'valibot';
 import { InputError } from '../errors.ts';
+import { withDecodedNames } from './decoded-names.ts';
 import { keepPorts, mergeCase, portsOf } from './merge.ts';
 import { isPattern, layerKey, matches } from './names.ts';
 import { nearest } from './nearest.ts';
@@ -33,7 +34,7 @@ import type {
  */
 export function parseRunSheet(text: string, file: string): RunSheet {
   const source: Source = { file, text, sha256: createHash('sha256').update(text, 'utf8').digest('hex') };
-  const root = withoutEmpty(parseTree(text, file));
+  const root = withDecodedNames(withoutEmpty(parseTree(text, file)), file);
   const values = validate(sheetSchema, root, file, []);
   return { ...toRunSheet(values, root, source, []), cases: parseCases(root, values, source) };
 }

@@ -1,3 +1,4 @@
+import { withoutEscapes } from '../escaped-names.ts';
 import { attribute, prefixedAttribute, type XmlElement } from './tree.ts';
 import { ValueError } from './value-error.ts';
 
@@ -5,11 +6,11 @@ import { ValueError } from './value-error.ts';
 export const MAX_NAME = 1000;
 
 /**
- * The drawn name: `data-name`, a vector editor's label (any `*:label`), a child `title`, `id`; trimmed; else null.
+ * The drawn name of what is written so: with an editor's escapes read.
  * @throws ValueError for one longer than MAX_NAME.
  */
-export function drawnName(element: XmlElement): string | null {
-  const name = nameAsDrawn(element);
+export function nameOf(written: string | null): string | null {
+  const name = written === null ? null : withoutEscapes(written);
   if (name !== null && name.length > MAX_NAME) {
     throw new ValueError(`its name has ${name.length} characters, over ${MAX_NAME} (the limit); shorten it`);
   }
@@ -18,6 +19,15 @@ export function drawnName(element: XmlElement): string | null {
 
 /** The drawn name of whatever length, to say which element is meant. */
 export function nameAsDrawn(element: XmlElement): string | null {
+  const written = nameAsWritten(element);
+  return written === null ? null : withoutEscapes(written);
+}
+
+/**
+ * The name as it stands in the file: `data-name`, a vector editor's label (any `*:label`), a child `title`, `id`; trimmed;
+ * else null.
+ */
+export function nameAsWritten(element: XmlElement): string | null {
   const title = element.children.find((child) => child.name === 'title' && child.isSvg);
   return (
     nonEmpty(attribute(element, 'data-name')) ??

@@ -47,11 +47,11 @@ export function readSvg(text: string, where: string): SvgDrawing {
   const isShown = ownKeyword(specified, 'display', 'inline') !== 'none';
   const walked = isShown
     ? walkDrawing(root, surroundings, cascade, byId, where)
-    : { shapes: [], unread: new Map<string, number>() };
+    : { shapes: [], undrawn: [], unread: new Map<string, number>() };
   const unread = new Map(walked.unread);
   if (cascade.skippedRules > 0) unread.set('style rule', cascade.skippedRules);
   if (foreignSheets > 0) unread.set('style sheet in another file', foreignSheets);
-  return { ...size, shapes: walked.shapes, unread: Object.fromEntries(unread) };
+  return { ...size, shapes: walked.shapes, undrawn: walked.undrawn, unread: Object.fromEntries(unread) };
 }
 
 interface TreeIndex {

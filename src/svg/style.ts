@@ -89,6 +89,7 @@ export function resolveStyle(
     stroked,
     filled: inked('fill'),
     strokeWidth,
+    zeroWidth: strokeInked && !stroked,
     dashed: stroked && isDashed(own['stroke-dasharray']),
     linecap: linecap === 'round' || linecap === 'square' ? linecap : 'butt',
     nonScalingStroke: ownKeyword(specified, 'vector-effect', 'none').includes('non-scaling-stroke'),

@@ -57,6 +57,8 @@ export interface ShapeStyle {
   readonly stroked: boolean;
   readonly filled: boolean;
   readonly strokeWidth: number;
+  /** It has a stroke, but 0 wide: nothing of it is drawn. */
+  readonly zeroWidth: boolean;
   readonly dashed: boolean;
   readonly linecap: 'butt' | 'round' | 'square';
   /** vector-effect: non-scaling-stroke, so strokeWidth is in CSS px of the page, whatever the transforms and the viewBox. */
@@ -85,6 +87,14 @@ export interface Shape {
   readonly clips: readonly Clip[];
 }
 
+/** What has a name and is not drawn, with why: for messages about names that are not found. */
+export interface Undrawn {
+  readonly kind: 'shape' | 'group';
+  readonly name: string;
+  /** "it is hidden (display: none)" */
+  readonly why: string;
+}
+
 /** A rectangle outside of which nothing is drawn. */
 export interface Clip {
   /** Coordinates of the rectangle → root user units. */
@@ -106,6 +116,8 @@ export interface SvgDrawing {
   readonly widthMm: number | null;
   readonly heightMm: number | null;
   readonly shapes: readonly Shape[];
+  /** Named shapes and groups that are not drawn; a group may be listed that also holds what is drawn. */
+  readonly undrawn: readonly Undrawn[];
   /** Elements passed over that draw something we do not read (foreignObject, image …), by kind. */
   readonly unread: Readonly<Record<string, number>>;
 }

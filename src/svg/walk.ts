@@ -8,7 +8,7 @@ import type { Cascade, Specified } from './cascade.ts';
 import { parseLength, toUserUnits } from './lengths.ts';
 import { MAX_COPIES, MAX_ELEMENTS, MAX_GROUP_NAMES, MAX_PATH_COMMANDS } from './limits.ts';
 import { multiply, translation } from './matrix.ts';
-import { drawnId, drawnName, nameAsDrawn } from './names.ts';
+import { drawnId, MAX_NAME, nameAsDrawn, nameAsWritten, nameOf } from './names.ts';
 import { shapePath } from './shapes.ts';
 import {
   addDisguises,
@@ -20,7 +20,8 @@ import {
 } from './style.ts';
 import { parseTransform, parseTransformOrigin } from './transform.ts';
 import { attribute, prefixedAttribute, type XmlElement } from './tree.ts';
-import type { Clip, Group, Matrix, PathCommand, Shape, ShapeStyle, ShapeTag } from './types.ts';
+import { refuseEscapedTwins } from './twins.ts';
+import type { Clip, Group, Matrix, PathCommand, Shape, ShapeStyle, ShapeTag, Undrawn } from './types.ts';
 import { quoted, ValueError } from './value-error.ts';
 import { parseAspectRatio, parseViewBox, type Viewport, viewBoxTransform } from './viewport.ts';
 
@@ -34,13 +35,15 @@ export interface Surroundings {
 
 export interface Walked {
   readonly shapes: readonly Shape[];
+  readonly undrawn: readonly Undrawn[];
   readonly unread: ReadonlyMap<string, number>;
 }
 
 /**
  * Everything that the children of the outermost svg draw, in document order.
  * @param byId the first element of each id.
- * @throws InputError with line and element for a value that cannot be read, a `use` that draws itself, or a limit.
+ * @throws InputError with line and element for a value that cannot be read, a `use` that draws itself, or a limit; with both
+ * names where two that are written differently are one.
  */
 export function walkDrawing(
   root: XmlElement,
@@ -55,7 +58,8 @@ export function walkDrawing(
     if (frame.next < frame.elements.length) walk.enter(frame.elements[frame.next++], frame.context);
     else walk.leave(frame);
   }
-  return { shapes: walk.shapes, unread: walk.unread };
+  refuseEscapedTwins(walk.shapes, walk.escaped, where);
+  return { shapes: walk.shapes, undrawn: walk.undrawn, unread: walk.unread };
 }
 
 interface Context extends Surroundings {
@@ -122,7 +126,10 @@ const NO_CLIPS: readonly Clip[] = [];
 
 class Walk {
   readonly shapes: Shape[] = [];
+  readonly undrawn: Undrawn[] = [];
   readonly unread = new Map<string, number>();
+  /** What goes by another name than it is written with, and how it is written. */
+  readonly escaped = new Map<Shape | Group, string>();
   readonly #cascade: Cascade;
   readonly #byId: ReadonlyMap<string, XmlElement>;
   readonly #where: string;
@@ -183,22 +190,34 @@ class Walk {
     const { name } = element;
     if (UNREAD.has(name)) return name;
     const isSymbolInUse = name === 'symbol' && context.use !== null;
-    if (NEVER_DRAWN.has(name) && !isSymbolInUse) return null;
+    if (NEVER_DRAWN.has(name) && !isSymbolInUse) {
+      if (context.copyOf === null) this.#passOver(element, `it stands in <${name}>, where nothing is drawn`);
+      return null;
+    }
     const isShape = SHAPE_TAGS.has(name);
     const isContainer = name === 'g' || name === 'a' || name === 'svg' || name === 'switch' || name === 'use';
     if (!isShape && !isContainer && !isSymbolInUse) return 'unknown element';
 
     const condition = unmetCondition(element);
-    if (condition !== null) return condition;
+    if (condition !== null) {
+      this.#passOver(element, 'a viewer without extensions that is set to English does not show it');
+      return condition;
+    }
     const css = this.#cascade.css(element, context.copyOf);
     if (css?.has('all'))
       throw new ValueError('the CSS property all is not read; set each property by itself');
     const specified = this.#cascade.specified(element, css);
-    if (ownKeyword(specified, 'display', 'inline') === 'none') return null;
+    if (ownKeyword(specified, 'display', 'inline') === 'none') {
+      this.#passOver(element, 'it is hidden (display: none)');
+      return null;
+    }
     const style = inherit(context.style, specified);
     const toRoot = multiply(context.toRoot, ownTransform(css, specified, context.viewport));
     if (!toRoot.every(Number.isFinite)) throw new ValueError('its transforms together are too large');
-    if (toRoot[0] * toRoot[3] - toRoot[1] * toRoot[2] === 0) return 'shape flattened by its transform';
+    if (toRoot[0] * toRoot[3] - toRoot[1] * toRoot[2] === 0) {
+      this.#passOver(element, 'its transform flattens it');
+      return 'shape flattened by its transform';
+    }
     const disguises = addDisguises(context.disguises, specified);
     const inner: Context = { ...context, toRoot, style, disguises };
     // SHAPE_TAGS holds ShapeTags only.
@@ -214,9 +233,15 @@ class Walk {
     context: Context,
   ): PassedOver {
     const visibility = context.style.visibility.toLowerCase();
-    if (visibility === 'hidden' || visibility === 'collapse') return null;
+    if (visibility === 'hidden' || visibility === 'collapse') {
+      this.#passOverShape(element, context.use, `it is hidden (visibility: ${visibility})`);
+      return null;
+    }
     const path = this.#pathOf(element, tag, css, context);
-    if (path.length === 0 && tag !== 'text' && tag !== 'image') return 'shape without size';
+    if (path.length === 0 && tag !== 'text' && tag !== 'image') {
+      this.#passOverShape(element, context.use, 'it has no size');
+      return 'shape without size';
+    }
     this.#commands += path.length;
     if (this.#commands > MAX_PATH_COMMANDS) {
       throw this.#fault(
@@ -225,11 +250,12 @@ class Walk {
       );
     }
     const { use } = context;
-    this.shapes.push({
+    const written = (use && nameAsWritten(use)) ?? nameAsWritten(element);
+    const shape: Shape = {
       tag,
       ordinal: this.shapes.length,
       // A shape drawn by `use` goes by the name that the use was given, if any: each copy can have its own.
-      name: (use && drawnName(use)) ?? drawnName(element),
+      name: nameOf(written),
       id: (use && drawnId(use)) ?? drawnId(element),
       groups: this.#groupsOf(context.chain, element),
       dataChannel: [element, use].some((one) => one !== null && attribute(one, 'data-channel') !== undefined),
@@ -238,8 +264,32 @@ class Walk {
       path,
       style: this.#styleOf(tag, specified, context),
       clips: context.clips,
-    });
+    };
+    this.shapes.push(shape);
+    if (written !== null && written !== shape.name) this.escaped.set(shape, written);
     return null;
+  }
+
+  /** A shape that is not drawn, under the name that it would have. */
+  #passOverShape(element: XmlElement, use: XmlElement | null, why: string): void {
+    this.#addUndrawn('shape', (use && nameAsDrawn(use)) ?? nameAsDrawn(element), why);
+  }
+
+  /** The names in a part of the tree that is not drawn. */
+  #passOver(element: XmlElement, why: string): void {
+    const pending = [element];
+    for (let one = pending.pop(); one !== undefined; one = pending.pop()) {
+      if (!one.isSvg) continue;
+      const kind = SHAPE_TAGS.has(one.name) || one.name === 'use' ? 'shape' : 'group';
+      if (kind === 'shape' || one.name === 'g' || one.name === 'svg' || one.name === 'symbol')
+        this.#addUndrawn(kind, nameAsDrawn(one), why);
+      this.#visit(one.children.length, one);
+      for (let i = one.children.length - 1; i >= 0; i--) pending.push(one.children[i]);
+    }
+  }
+
+  #addUndrawn(kind: Undrawn['kind'], name: string | null, why: string): void {
+    if (name !== null && name.length <= MAX_NAME) this.undrawn.push({ kind, name, why });
   }
 
   #drawContainer(element: XmlElement, css: Specified, specified: Specified, context: Context): PassedOver {
@@ -247,7 +297,7 @@ class Walk {
     if (name === 'use') return this.#drawUse(element, css, context);
     if (name === 'svg' || name === 'symbol') return this.#drawViewport(element, css, specified, context);
     const elements = name === 'switch' ? this.#chosen(element) : element.children;
-    this.#push(element, elements, { ...context, use: null, chain: extend(context.chain, element) });
+    this.#push(element, elements, { ...context, use: null, chain: this.#extend(context.chain, element) });
     return null;
   }
 
@@ -278,7 +328,7 @@ class Walk {
     const isShape = SHAPE_TAGS.has(target.name);
     // A use that draws one shape stands for the shape, and so is no group of its own.
     const depth = attribute(element, 'data-depth') ?? null;
-    const chain = isShape ? context.chain : extend(context.chain, element, depth);
+    const chain = isShape ? context.chain : this.#extend(context.chain, element, depth);
     const toRoot = x === 0 && y === 0 ? context.toRoot : multiply(context.toRoot, translation(x, y));
     this.#push(element, [target], { ...context, toRoot, chain, use: element, copyOf: target });
     return null;
@@ -313,7 +363,7 @@ class Walk {
       own = viewBox;
     }
     const toRoot = multiply(context.toRoot, inner);
-    const chain = extend(context.chain, element);
+    const chain = this.#extend(context.chain, element);
     this.#push(element, element.children, { ...context, toRoot, viewport: own, chain, clips, use: null });
     return null;
   }
@@ -340,6 +390,19 @@ class Walk {
     const style = resolveStyle(tag, context.style, specified, context.disguises, context.viewport);
     this.#lastStyle = { key, style };
     return style;
+  }
+
+  #extend(chain: GroupChain | null, element: XmlElement, depth?: string | null): GroupChain | null {
+    const written = nameAsWritten(element);
+    const name = nameOf(written);
+    const dataDepth = depth ?? attribute(element, 'data-depth') ?? null;
+    if (name === null && dataDepth === null) return chain;
+    const group: Group = { name, dataDepth };
+    if (name !== null) {
+      if (written !== null && written !== name) this.escaped.set(group, written);
+      this.#addUndrawn('group', name, 'it holds nothing that is drawn');
+    }
+    return { group, outer: chain, list: null };
   }
 
   #groupsOf(chain: GroupChain | null, element: XmlElement): readonly Group[] {
@@ -416,14 +479,6 @@ function ownTransform(css: Specified, specified: Specified, viewport: Viewport |
   if (origin === undefined || text === 'none') return matrix;
   const [x, y] = parseTransformOrigin(origin, viewport);
   return multiply(multiply(translation(x, y), matrix), translation(-x, -y));
-}
-
-function extend(chain: GroupChain | null, element: XmlElement, depth?: string | null): GroupChain | null {
-  const name = drawnName(element);
-  const dataDepth = depth ?? attribute(element, 'data-depth') ?? null;
-  return name === null && dataDepth === null
-    ? chain
-    : { group: { name, dataDepth }, outer: chain, list: null };
 }
 
 /** A length of a `use` or nested svg; null when not given or `auto`. */

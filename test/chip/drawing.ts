@@ -36,6 +36,7 @@ export function stroke(
     linecap: 'butt',
     centrelines: [line(coordinates)],
     dataDepth: null,
+    dataChannel: false,
     disguises: [],
     ...options,
   });
@@ -73,6 +74,7 @@ export function filled(name: string | null, ring: readonly number[], options: Op
     groups: [],
     rings: [Float64Array.from(ring)],
     stroked: false,
+    dataChannel: false,
     ...options,
   });
 }
@@ -102,6 +104,7 @@ export function layout(drafts: readonly Draft[], options: Partial<Omit<Layout, '
     unitReason: 'width 76mm over viewBox width 76',
     widthMm: 76,
     heightMm: 26,
+    undrawn: [],
     unread: {},
     ...options,
     items: drafts.map((draft, ordinal) => draft(ordinal)),

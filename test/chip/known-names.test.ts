@@ -1,4 +1,8 @@
 import { describe, expect, it } from 'vitest';
+import { assembleChip } from '../../src/chip/assemble.ts';
+import { layOut } from '../../src/layout/layout.ts';
+import { parseRunSheet } from '../../src/runsheet/parse.ts';
+import { readSvg } from '../../src/svg/read.ts';
 import { chipOf, circle, type Draft, filled, ignored, rectangle, stroke } from './drawing.ts';
 
 const drafts: readonly Draft[] = [
@@ -95,7 +99,7 @@ describe('a name that the drawing lacks', () => {
       '2: targets[0].channel: no channel matches "l*ne-9"; did you mean "lane-1"?',
     ],
     ['fields: [lane-3]', '2: fields[0]: the drawing has no shape "lane-3"; did you mean "lane-1"?'],
-    ['fields: [label]', '2: fields[0]: the drawing has no shape "label"; its shapes are "lane-1", "feed"'],
+    ['fields: [label]', '2: fields[0]: "label" is drawn but is no shape here: it is a text'],
     ['pillars: [Lane]', '2: pillars[0]: the drawing has no layer "Lane"; did you mean "Lanes"?'],
     ['switch: { from: [fed] }', '2: switch.from[0]: the drawing has no port "fed"; did you mean "feed"?'],
     ['switch: { reach: "lan-*" }', '2: switch.reach: no channel matches "lan-*"; did you mean "lane-1"?'],
@@ -162,5 +166,76 @@ describe('a name that the drawing lacks', () => {
       chipOf([stroke('toString', [0, 0, 1, 0]), circle('valueOf', 0, 0)], 'depth: 1 um'),
     ).not.toThrow();
     expect(chipOf([circle('valueOf', 0, 0)], 'depth: 1 um').ports[0]!.condition).toEqual({ kind: 'unset' });
+  });
+});
+
+describe('a name of something in the drawing that is not read', () => {
+  const SVG = `<svg xmlns="http://www.w3.org/2000/svg" width="40mm" height="20mm" viewBox="0 0 40 20">
+    <defs><path id="spare" d="M0 0h9" stroke="#000"/></defs>
+    <g id="top" fill="none" stroke="#000" stroke-width=".2">
+      <path id="run" d="M4 10H36"/>
+      <path id="gone" d="M4 12H36" style="display:none"/>
+      <path id="shy" d="M4 12H36" visibility="hidden"/>
+      <path id="thin" d="M4 12H36" stroke-width="0"/>
+      <path id="bare" d="M4 12H36" stroke="none"/>
+      <path id="point" d="M4 12z"/>
+      <rect id="flat" width="0" height="3"/>
+      <path id="filled" d="M4 15H9V16H4z" fill="#06c" stroke="none"/>
+      <path id="dashed" d="M4 18H9" stroke-dasharray="1 1"/>
+    </g>
+    <g id="old" display="none"><g id="older"><path id="lane-7" d="M0 0h9" stroke="#000"/><circle id="well" r="1"/></g></g>
+    <g id="empty"><path id="none" d="M0 0h9" fill="none"/></g>
+    <circle id="in" cx="4" cy="10" r=".75"/>
+  </svg>`;
+  const refusal = (sheet: string): string => {
+    try {
+      const layout = layOut(readSvg(SVG, 'c.svg'), 'c.svg');
+      assembleChip({
+        layout,
+        sheet: parseRunSheet(`depth: 50 um\n${sheet}`, 'c.run.yaml'),
+        file: 'c.svg',
+        layoutSha256: '0'.repeat(64),
+      });
+    } catch (error) {
+      if (error instanceof Error) return error.message;
+    }
+    return 'taken';
+  };
+
+  it.each([
+    ['channels: { run: {} }', 'taken'],
+    ['channels: { gone: {} }', '"gone" is in the drawing but is not drawn: it is hidden (display: none)'],
+    ['channels: { shy: {} }', '"shy" is in the drawing but is not drawn: it is hidden (visibility: hidden)'],
+    ['channels: { thin: {} }', '"thin" is in the drawing but is not drawn: its stroke is 0 wide'],
+    ['channels: { bare: {} }', '"bare" is in the drawing but is not drawn: it has neither stroke nor fill'],
+    ['channels: { point: {} }', '"point" is in the drawing but is not drawn: it has no length'],
+    ['channels: { flat: {} }', '"flat" is in the drawing but is not drawn: it has no size'],
+    ['channels: { spare: {} }', '"spare" is in the drawing but is not drawn: it stands in <defs>'],
+    ['channels: { lane-7: {} }', '"lane-7" is in the drawing but is not drawn: it is hidden (display: none)'],
+    [
+      'channels: { "lane-*": {} }',
+      '"lane-*" matches no channel: "lane-7" is in the drawing but is not drawn: it is hidden (display: none)',
+    ],
+    [
+      'channels: { filled: {} }',
+      '"filled" is drawn but is no channel here: it is filled, and only a stroke is a centreline',
+    ],
+    ['channels: { dashed: {} }', '"dashed" is drawn but is no channel here: it is a dashed stroke'],
+    ['channels: { in: {} }', '"in" is drawn but is no channel here: it is a circle, read as a port'],
+    ['channels: { top: {} }', '"top" is a group of shapes; a channel is one of its shapes'],
+    ['ports: { run: open }', '"run" is drawn but is no port here: it is a stroke, read as a channel'],
+    ['ports: { well: open }', '"well" is in the drawing but is not drawn: it is hidden (display: none)'],
+    ['layers: { TOP: { depth: 60 um } }', 'taken'],
+    ['layers: { Old: ignore }', '"old" is in the drawing but is not drawn: it is hidden (display: none)'],
+    ['layers: { older: ignore }', '"older" is in the drawing but is not drawn: it is hidden (display: none)'],
+    [
+      'layers: { empty: ignore }',
+      '"empty" is in the drawing but is not drawn: it holds nothing that is drawn',
+    ],
+    ['layers: { run: ignore }', '"run" is a shape; a layer is a group of shapes'],
+    ['outline: gone', 'outline: "gone" is in the drawing but is not drawn: it is hidden (display: none)'],
+    ['ports: { wel: open }', 'the drawing has no port "wel"; its ports are "in"'],
+  ])('is answered with what it is: %s', (sheet, message) => {
+    expect(refusal(sheet)).toContain(message);
   });
 });

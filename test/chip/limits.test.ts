@@ -30,7 +30,8 @@ describe('limits', () => {
         limits.maxPressurePa,
       ];
       expect(all.map((limit) => limit?.value ?? null)).toEqual(values);
-      for (const limit of all) if (limit !== null) expect(limit.origin).toBe('usual practice, no source');
+      for (const limit of all)
+        if (limit !== null) expect(limit.origin).toBe('typical value, not from your maker');
       expect(limits.stiffnessPa?.value ?? null).toBe(process === 'cast elastomer' ? 1.5e6 : null);
     });
   }
@@ -39,7 +40,7 @@ describe('limits', () => {
     const limits = limitsOf('process: etched glass\nlimits: { min_wall: 70 um, max_width_to_depth: 30 }');
     expect(limits.minWallM(80e-6)).toEqual({ value: 70e-6, origin: 'run sheet' });
     expect(limits.maxWidthToDepth).toEqual({ value: 30, origin: 'run sheet' });
-    expect(limits.minWidthM!.origin).toBe('usual practice, no source');
+    expect(limits.minWidthM!.origin).toBe('typical value, not from your maker');
   });
 
   it('that nobody gave are none, but for port diameter and Reynolds number', () => {

@@ -246,10 +246,11 @@ describe('filled outlines', () => {
   const faults = (drafts: readonly Draft[]) => chipOf(drafts, SHEET).faults;
 
   it('are a fault when stroked, and only counted when nothing touches them', () => {
-    expect(faults([filled('chamber', square, { stroked: true })])).toEqual([
-      { kind: 'filled-outline', name: 'chamber', xMm: 10, yMm: 0, stroked: true },
+    const away = stroke('away', [50, 0, 60, 0]);
+    expect(faults([away, filled('chamber', square, { stroked: true })])).toEqual([
+      { kind: 'filled-outline', name: 'chamber', xMm: 10, yMm: 0, reason: 'stroked', ports: [], ends: [] },
     ]);
-    expect(chipOf([filled('logo', square)], SHEET)).toMatchObject({
+    expect(chipOf([away, filled('logo', square)], SHEET)).toMatchObject({
       faults: [],
       ignored: { 'filled outline': 1 },
     });

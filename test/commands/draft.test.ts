@@ -97,6 +97,48 @@ describe('rillcheck draft', () => {
       expect(value).not.toBeNull();
   });
 
+  it('does not list pillars as ports, and tells them apart by the layer of the ports where it can', async () => {
+    const posts = Array.from(
+      { length: 40 },
+      (_, i) => `<circle cx="${10 + (i % 10) * 2}" cy="${8 + Math.floor(i / 10)}" r=".3"/>`,
+    );
+    const chip = (holes: string): string =>
+      `<svg xmlns="http://www.w3.org/2000/svg" width="40mm" height="20mm" viewBox="0 0 40 20"><g id="lanes"><path id="wide" d="M4 10H36" fill="none" stroke="#000" stroke-width="5"/></g><g id="posts">${posts.join('')}</g>${holes}</svg>`;
+    const ports = '<circle id="in" cx="4" cy="10" r="3"/><circle id="out" cx="36" cy="10" r="3"/>';
+    put('posts.svg', chip(`<g id="holes">${ports}</g>`));
+    const { out } = await rillcheck('draft', 'posts.svg', '-r', '-');
+    expect(out).toContain(
+      'ports_layer: holes # only circles of this layer are ports; assumed, for the 40 circles within wide look like pillars',
+    );
+    expect(out).toContain(
+      '# 40 circles of 0.6 mm (in posts) within wide, where no channel ends, are taken for pillars and not listed',
+    );
+    expect(out).not.toContain('port-');
+    expect(Object.keys(parseRunSheet(out, 'posts.run.yaml').ports)).toEqual(['in', 'out']);
+    put('posts.run.yaml', out);
+    const { findings } = JSON.parse((await rillcheck('check', 'posts.svg', '--json')).out);
+    const rules = findings.map(({ rule }: { rule: string }) => rule);
+    expect(rules.filter((rule: string) => rule === 'unset-port')).toHaveLength(2);
+    expect(rules).toContain('obstacle');
+
+    // Ports in no layer can't be told from pillars by one: nothing is assumed in the sheet.
+    put('loose.svg', chip(ports));
+    expect((await rillcheck('draft', 'loose.svg', '-r', '-')).out).toContain('# ports_layer: holes');
+    // Two ports alone are ports, wherever they lie.
+    put('two.svg', chip(ports).replace(posts.slice(2).join(''), '').replace(ports, ''));
+    expect((await rillcheck('draft', 'two.svg', '-r', '-')).out).toContain('# port-1: 0.6 mm hole');
+  });
+
+  it('says how large a chip drawn in pixels is under both usual sizes of one', async () => {
+    put(
+      'px.svg',
+      '<svg xmlns="http://www.w3.org/2000/svg" width="288" height="96"><path d="M9 9h90" fill="none" stroke="#000"/></svg>',
+    );
+    expect((await rillcheck('draft', 'px.svg', '-r', '-')).out).toContain(
+      'the drawing is 76.2 by 25.4 mm at 96 pixels per inch (unit: 0.264583 mm), 101.6 by 33.87 mm at 72 (unit: 0.352778 mm)',
+    );
+  });
+
   it('never writes over a run sheet without --force, and then writes it anew', async () => {
     put('culture.svg', readFileSync(join(DEMOS, 'culture.svg'), 'utf8'));
     put('culture.run.yaml', 'depth: 50 um\n');

@@ -149,7 +149,7 @@ describe('walls between channels', () => {
       ...plain,
       limits: {
         ...plain.limits,
-        minWallM: (depthM) => ({ value: 50e-6 + 2 * depthM, origin: 'usual practice, no source' }),
+        minWallM: (depthM) => ({ value: 50e-6 + 2 * depthM, origin: 'typical value, not from your maker' }),
       },
     };
     const context = { chip, network: buildNetwork(chip), flow: null };

@@ -42,14 +42,20 @@ describe('what a drawn shape is on a chip', () => {
     [`<path ${S} d="M0 0h9v9zM20 0h5"/>`, ['stroke']],
     [`<circle data-channel="" ${U} r="3"/>`, ['stroke']],
     [`<ellipse data-channel="" ${U} rx="3" ry="1"/>`, ['stroke']],
+    // What the drawing says is a channel is one by its stroke, whatever fills it.
+    [`<circle data-channel="" ${S} r="3"/>`, ['stroke']],
+    [`<path data-channel="" ${S} d="M0 0h9v9z"/>`, ['stroke']],
     // Closed and filled: outlines.
     [`<path ${S} d="M0 0h9v9z"/>`, ['outline s']],
     [`<polygon points="0 0 9 0 9 9"/>`, ['outline']],
     [`<rect ${S} width="9" height="5"/>`, ['outline s']],
     ['<rect width="9" height="5"/>', ['outline']],
     ['<ellipse rx="3" ry="1"/>', ['outline']],
-    [`<circle data-channel="" ${S} r="3"/>`, ['outline s']],
+    ['<circle data-channel="" r="3"/>', ['outline']],
     [`<path d="M0 0h9v9H0V0"/>`, ['outline']],
+    // A fill closes what it fills.
+    ['<path d="M0 0h9v9"/>', ['outline']],
+    ['<path d="M0 0h9v9zM20 0h9v9"/>', ['outline']],
     [`<path d="${RING}zM-1 0a1 1 0 112 0 1 1 0 11-2 0z"/>`, ['outline']],
     // Circles, and what is round.
     ['<circle r="3"/>', ['hole f']],
@@ -75,7 +81,7 @@ describe('what a drawn shape is on a chip', () => {
     ['<text>a</text><image/>', ['ignored text', 'ignored image']],
     [`<path ${U} stroke-dasharray="2 1" d="M0 0h9"/>`, ['ignored dashed stroke']],
     [`<rect ${U} stroke-dasharray="2 1" width="9" height="5"/>`, ['ignored dashed stroke']],
-    ['<path d="M0 0h9v9"/>', ['ignored fill']],
+    ['<path d="M0 0h9"/>', ['ignored fill']],
     ['<line x2="9"/>', []],
     ['<path fill="none" d="M0 0h9"/>', []],
     [`<path ${S} d="M1 1z"/>`, []],

@@ -42,6 +42,8 @@ export function chipOf(channels: readonly ChannelSpec[], ports: readonly PortSpe
     ports: ports.map(toPort),
     edge: null,
     sizeMm: null,
+    obstacles: [],
+    unreadLines: [],
     ignored: {},
     faults: [],
     fluid: {
@@ -95,6 +97,7 @@ function toChannel(spec: ChannelSpec, ordinal: number, depths: readonly string[]
       bendRadius: Float64Array.from(spec.radii?.[k] ?? new Array(line.length / 2 - 1).fill(0)),
     })),
     disguises: [],
+    dataChannel: false,
     settings: null,
   };
 }

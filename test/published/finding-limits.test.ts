@@ -44,10 +44,10 @@ describe('usual limits that have a source', () => {
   });
 
   it('says of every usual limit that it has no source', () => {
-    expect(limitsOf('cast elastomer').minWidthM?.origin).toBe('usual practice, no source');
+    expect(limitsOf('cast elastomer').minWidthM?.origin).toBe('typical value, not from your maker');
     expect(limitsOf('cast elastomer').maxPressurePa).toEqual({
       value: 100e3,
-      origin: 'usual practice, no source',
+      origin: 'typical value, not from your maker',
     });
   });
 });

@@ -200,6 +200,7 @@ function sampleChip(names: SampleNames, { show = {}, bare = false }: SampleOptio
       },
     ],
     disguises: [],
+    dataChannel: false,
     settings,
   });
   const tubing: TubingPiece[] = [{ boreM: 0.5e-3, lengthM: 0.3, temperatureK: null }];
@@ -251,6 +252,8 @@ function sampleChip(names: SampleNames, { show = {}, bare = false }: SampleOptio
       sidesMm: [76, 26],
     },
     sizeMm: bare ? null : [76, 26],
+    obstacles: [],
+    unreadLines: [],
     ignored: { text: 3, 'dashed stroke': 1 },
     faults: [],
     fluid,
@@ -262,7 +265,7 @@ function sampleChip(names: SampleNames, { show = {}, bare = false }: SampleOptio
       minWallM: () => ({ value: 40e-6, origin: 'run sheet' }),
       maxWidthToDepth: null,
       maxDepthToWidth: null,
-      edgeMarginM: { value: 2e-3, origin: 'usual practice, no source' },
+      edgeMarginM: { value: 2e-3, origin: 'typical value, not from your maker' },
       portGapM: null,
       portDiameterM: { value: [0.2e-3, 10e-3], origin: 'default' },
       portGridM: null,

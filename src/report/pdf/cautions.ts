@@ -12,5 +12,5 @@ const CAUTIONS: readonly string[] = [
   'Substances: handle chemicals and biological material under local rules.',
   'Use: the model is a design aid and not a qualification of a medical or diagnostic device.',
   'Precedence: local codes and licensed practice come first.',
-  'Limits marked "usual practice, no source" are habits of the trade and promise nothing about a particular material, machine or bond.',
+  'Limits marked "typical value, not from your maker" are habits of the trade and promise nothing about a particular material, machine or bond.',
 ];

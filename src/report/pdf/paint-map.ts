@@ -1,4 +1,4 @@
-import type { MapDrawing, MapLabel, MapStroke } from '../map.ts';
+import { type MapDrawing, type MapLabel, type MapStroke, PALE_FILL, PALE_LINE } from '../map.ts';
 import { type Element, type Paper, POINTS_PER_MM } from './paper.ts';
 
 /** Paints a map with its upper left corner at x, y (points) as a tagged figure; its texts were measured in the paper's font. */
@@ -15,12 +15,14 @@ export function paintMap(
     'Figure',
     () => {
       inMillimetres(paper, x, y, () => {
+        paintUnread(paper, drawing);
         paintEdge(paper, drawing);
         paintStrokes(paper, drawing.ground);
         paintStrokes(
           paper,
           drawing.reaches.flatMap(({ strokes }) => strokes),
         );
+        paintObstacles(paper, drawing);
         paintHoles(paper, drawing);
         paintMarkers(paper, drawing);
         paintLegend(paper, drawing);
@@ -46,6 +48,18 @@ function paintEdge({ doc }: Paper, { edge }: Pick<MapDrawing, 'edge'>): void {
     trace(doc, ring);
     doc.lineWidth(0.2).strokeColor('#606060').stroke();
   }
+}
+
+function paintUnread({ doc }: Paper, { unread }: MapDrawing): void {
+  if (unread.under.length === 0) return;
+  for (const line of unread.under) trace(doc, line);
+  doc.lineWidth(0.15).strokeColor(PALE_LINE).stroke();
+}
+
+function paintObstacles({ doc }: Paper, { unread }: MapDrawing): void {
+  if (unread.over.length === 0) return;
+  for (const ring of unread.over) trace(doc, ring);
+  doc.lineWidth(0.12).fillAndStroke(PALE_FILL, PALE_LINE, 'even-odd');
 }
 
 /** Strokes of one look are painted in one go: 100 000 of them are a few dozen paint operations. */
