@@ -2,6 +2,7 @@ import { cornerRules } from './corners.ts';
 import { edgeRules } from './edge.ts';
 import { endRules } from './ends.ts';
 import { flowRules } from './flow.ts';
+import { layerRules } from './layers.ts';
 import { levelRules } from './level-sensitive.ts';
 import { networkRules } from './network.ts';
 import { portRules } from './ports.ts';
@@ -20,6 +21,7 @@ export const RULES: readonly Rule[] = [
   ...readingRules,
   ...wallRules,
   ...strokeRules,
+  ...layerRules,
   ...endRules,
   ...portRules,
   ...edgeRules,
