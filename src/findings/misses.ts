@@ -112,7 +112,7 @@ function findMiss(context: FindingContext, tip: Tip): NearMiss | null {
   const c = end >> 1;
   const places = tip.ends.map((member) => endPlace(network, member));
   const [place] = places;
-  const own = new Set([...tip.ends, ...tip.leftOut].map((member) => endPlace(network, member).piece));
+  const own = new Set(places.map(({ piece }) => piece));
   const channel = chip.channels[pieces.channel[place.piece]];
   const half = pieces.half[place.piece];
   const minWall = chip.limits.minWallM(Number.isNaN(channel.depthMm) ? 0 : channel.depthMm / 1e3);
@@ -128,7 +128,7 @@ function findMiss(context: FindingContext, tip: Tip): NearMiss | null {
     tip.y - around,
     tip.x + around,
     tip.y + around,
-    (i) => pieces.plane[i] === channel.plane && !own.has(i),
+    (i) => pieces.plane[i] === channel.plane && !own.has(i) && !leftOutPieces(context).has(i),
   );
   for (const i of found ?? []) {
     const gap = painted.map((face) => gapToEnd(chip, pieces, i, face)).reduce(nearer);
@@ -233,6 +233,14 @@ function findMiss(context: FindingContext, tip: Tip): NearMiss | null {
     return -1;
   }
 }
+
+/** End pieces that rule 4 left out at tips: a stroke that is kept covers the same ground. */
+const leftOutPieces = oncePerContext(
+  (context) =>
+    new Set(
+      tipsOf(context).flatMap(({ leftOut }) => leftOut.map((end) => endPlace(context.network, end).piece)),
+    ),
+);
 
 /** A channel of a fan leads away from what the fan misses by at least this share of the way along it. */
 const LEAST_RECESSION = 0.15;
