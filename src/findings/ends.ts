@@ -78,9 +78,12 @@ function toMissFinding(context: FindingContext, miss: NearMiss): Finding {
   });
 }
 
-/** An end that points at something was meant to meet it; a fan may be a corner, unless a part stands still for want of the join. */
+/**
+ * An end that points at something was meant to meet it, and so were three that begin there. Two may be a corner, unless a
+ * part stands still for want of the join.
+ */
 function isSurelyMeant(context: FindingContext, { tip, pointsAtIt, missed, port }: NearMiss): boolean {
-  if (!pointsAtIt || tip.kind === 'end') return pointsAtIt;
+  if (!pointsAtIt || tip.kind === 'end' || tip.ends.length > 2) return pointsAtIt;
   const { ofCentreline, ofPort } = partsOnDrawing(context);
   const from = ofCentreline[tip.ends[0] >> 1];
   const to = port >= 0 ? ofPort[port] : ofCentreline[missed];
