@@ -12,6 +12,7 @@ import { nameNodes, nameReach, nameSegment } from './names.ts';
 import { classifyNodes, type NodeJoints } from './node-joints.ts';
 import { type Kept, leaveOutEndPieces } from './overshoot.ts';
 import { type Arcs, type Reaches, toArcs, toReaches } from './reaches.ts';
+import { type Runs, toRuns } from './runs.ts';
 import { type Stops, stopsByNode, toStops } from './stops.ts';
 import { findTrims } from './trimming.ts';
 import { type EndFate, type Network, NODE_KINDS, type NodeKind } from './types.ts';
@@ -54,7 +55,8 @@ export function buildNetwork(chip: Chip): Network {
   const atNodes = classifyNodes(draft, arcs, tally);
   const { trims, strips } = findTrims(draft, stops, kept, atNodes.trimming);
   const reaches = toReaches(draft, arcs, trims);
-  const joints = toReachJoints(draft, reaches, atNodes, addDuctJoints(chip, reaches, tally));
+  const runs = toRuns(draft, reaches);
+  const joints = toReachJoints(draft, reaches, runs, atNodes, addDuctJoints(draft, reaches, runs, tally));
   return toNetwork(draft, bundles, stops, kept, arcs, reaches, strips, joints, tally);
 }
 
@@ -222,6 +224,7 @@ interface ReachJoints {
 function toReachJoints(
   draft: Draft,
   reaches: Reaches,
+  runs: Runs,
   atNodes: NodeJoints,
   inDucts: DuctJoints,
 ): ReachJoints {
@@ -233,14 +236,7 @@ function toReachJoints(
     boundMm[r] += atNodes.sideBoundMm[2 * a] + atNodes.sideBoundMm[2 * a + 1];
   }
   if (draft.chip.joints === 'resolved') {
-    // Joints apart as the rules ask leave every duct most of its length. Should drawing and slack conspire, half of it is
-    // kept and the rest goes to the bound, for a duct without resistance has no flow.
-    for (let r = 0; r < reaches.count; r++) {
-      const least = -0.5 * reaches.resolvedMm[r];
-      if (jointMm[r] >= least) continue;
-      boundMm[r] += least - jointMm[r];
-      jointMm[r] = least;
-    }
+    for (let n = 0; n < runs.count; n++) keepHalf(reaches, runs, n, jointMm, boundMm);
     return { jointMm, boundMm };
   }
   return {
@@ -249,6 +245,39 @@ function toReachJoints(
       (bound, r) => bound + Math.abs(jointMm[r] + reaches.resolvedMm[r] - reaches.byRuleMm[r]),
     ),
   };
+}
+
+/**
+ * Joints apart as the rules ask leave every run most of its length; a reach of it that is shorter than what they take hands
+ * the rest on to the others, for a duct without resistance has no flow. Should drawing and slack conspire against the whole
+ * run, half of it is kept and the rest goes to the bound.
+ */
+function keepHalf(
+  { resolvedMm }: Reaches,
+  { first, reach }: Runs,
+  n: number,
+  jointMm: Float64Array,
+  boundMm: Float64Array,
+): void {
+  let lacking = 0;
+  let spare = 0;
+  for (let k = first[n]; k < first[n + 1]; k++) {
+    const room = jointMm[reach[k]] + 0.5 * resolvedMm[reach[k]];
+    if (room < 0) lacking -= room;
+    else spare += room;
+  }
+  if (lacking === 0) return;
+  const share = Math.min(1, lacking / spare);
+  for (let k = first[n]; k < first[n + 1]; k++) {
+    const r = reach[k];
+    const room = jointMm[r] + 0.5 * resolvedMm[r];
+    if (room >= 0) {
+      jointMm[r] -= share * room;
+      continue;
+    }
+    jointMm[r] = -0.5 * resolvedMm[r];
+    if (lacking > spare) boundMm[r] += (-room * (lacking - spare)) / lacking;
+  }
 }
 
 interface NodeNumbers {

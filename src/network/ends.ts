@@ -12,7 +12,7 @@ import { reachInStrip, StripNeighbours } from './strips.ts';
  *
  * Ends within the slack of each other are one node (bundles.ts). The strips of its members are no candidates for each
  * other: each member is carried on alone from there, unless a member's drawn stroke already reaches that centreline inside
- * that strip.
+ * that strip. Nor is a strip that the duct itself goes on in within two widths, drawn as further strokes end to end.
  *
  * Each end is judged on the drawing alone, so the order of the ends does not matter.
  */
@@ -105,8 +105,8 @@ type Goal =
 /** What rule 3 says of one end; null when it stays as it is. Looks at the drawing alone. */
 function goalOf(judge: EndJudge, end: number): Goal | null {
   const { draft } = judge;
-  const candidate = nearestCandidate(judge, end);
-  if (candidate === null) return null;
+  const candidate = candidatesOf(judge, end).find(({ centreline }) => !goesOnIn(judge, end, centreline));
+  if (candidate === undefined) return null;
   const { centreline } = candidate;
   const last = metInStrip(judge, end, centreline);
   if (last !== null) {
@@ -135,13 +135,46 @@ function join(draft: Draft, end: number, goal: Goal): void {
 
 /** Whether the drawn stroke of another member of the end's bundle already reaches a centreline inside its strip. */
 function bundleReaches(judge: EndJudge, end: number, centreline: number): boolean {
-  const { of, first, member } = judge.bundles;
-  const head = of[end];
-  if (head < 0) return false;
-  for (let k = first[head]; k < first[head + 1]; k++) {
-    if (member[k] !== end && metInStrip(judge, member[k], centreline) !== null) return true;
+  return membersAt(judge.bundles, end).some(
+    (other) => other !== end && metInStrip(judge, other, centreline) !== null,
+  );
+}
+
+/**
+ * Whether strokes that join end to end lead from an end to an end of another centreline, or across it inside its strip,
+ * within two of its widths: then that is where the duct itself goes on, and no strip that the end ran into. It is the same
+ * duct as if it had been drawn in one stroke, which no end joins within two widths back along it.
+ */
+function goesOnIn(judge: EndJudge, end: number, centreline: number): boolean {
+  const { draft, bundles } = judge;
+  const { pieces } = draft;
+  const mostMm = 4 * pieces.half[pieces.firstPiece[centreline]];
+  const seen = new Set<number>([end]);
+  const open: { readonly from: number; readonly walkedMm: number }[] = [{ from: end, walkedMm: 0 }];
+  const enter = (at: number, walkedMm: number): void => {
+    for (const from of membersAt(bundles, at)) {
+      if (!seen.has(from)) open.push({ from, walkedMm });
+      seen.add(from);
+    }
+  };
+  enter(end, 0);
+  for (let k = 0; k < open.length && k < MOST_STROKES; k++) {
+    const { from, walkedMm } = open[k];
+    const length = pieces.centrelineLength[from >> 1];
+    if (walkedMm > 0 && metInStrip(judge, from, centreline) !== null) return true;
+    if (walkedMm + length > mostMm) continue;
+    if (membersAt(bundles, from ^ 1).some((e) => e >> 1 === centreline)) return true;
+    enter(from ^ 1, walkedMm + length);
   }
   return false;
+}
+
+/** More strokes within two widths are no drawing; bounds the time. */
+const MOST_STROKES = 256;
+
+/** The ends of the bundle that an end belongs to; none for an end that is alone. */
+function membersAt({ of, first, member }: Bundles, end: number): Int32Array {
+  return of[end] < 0 ? member.subarray(0, 0) : member.subarray(first[of[end]], first[of[end] + 1]);
 }
 
 /** Position at which the end's channel met a centreline since it entered that strip; null when it did not. */
@@ -150,11 +183,11 @@ function metInStrip({ draft, met, strips }: EndJudge, end: number, centreline: n
   return last !== null && hasStayedInside(draft, end, last, centreline, strips) ? last : null;
 }
 
-/** Of the strips that hold the end, but those of its own bundle, the one whose centreline is nearest. */
-function nearestCandidate({ draft, bundles }: EndJudge, end: number): Candidate | null {
+/** The strips that hold the end, but those of its own bundle, nearest centreline first. */
+function candidatesOf({ draft, bundles }: EndJudge, end: number): Candidate[] {
   const { near, pieces, ends, slackMm } = draft;
   const own = endPiece(pieces, end);
-  let best: Candidate | null = null;
+  const nearest = new Map<number, Candidate>();
   for (let k = near.firstPair[own]; k < near.firstPair[own + 1]; k++) {
     const pair = near.pairOf[k];
     const other = near.pairA[pair] === own ? near.pairB[pair] : near.pairA[pair];
@@ -177,11 +210,11 @@ function nearestCandidate({ draft, bundles }: EndJudge, end: number): Candidate 
       ends.x[end] - (pieces.x1[other] + t * (pieces.x2[other] - pieces.x1[other])),
       ends.y[end] - (pieces.y1[other] + t * (pieces.y2[other] - pieces.y1[other])),
     );
-    const isNearer =
-      best === null || distance < best.distance || (distance === best.distance && c < best.centreline);
-    if (isNearer) best = { centreline: c, piece: other, distance };
+    if (distance < (nearest.get(c)?.distance ?? Number.POSITIVE_INFINITY)) {
+      nearest.set(c, { centreline: c, piece: other, distance });
+    }
   }
-  return best;
+  return [...nearest.values()].sort((a, b) => a.distance - b.distance || a.centreline - b.centreline);
 }
 
 /** Whether another end of a centreline stands at the same place. */
@@ -221,6 +254,9 @@ function hasStayedInside(
   return reachInStrip(draft, end >> 1, from, direction, strips, channel, null) >= length - draft.slackMm;
 }
 
+/** An end on a centreline within the slack is carried on at most this many slacks. */
+const FLAT = 4;
+
 /** The place on the candidate's centreline that the end joins. */
 function carryOn(draft: Draft, end: number, candidate: Candidate): { x: number; y: number; s: number } {
   const { pieces, ends, near, slackMm } = draft;
@@ -229,7 +265,8 @@ function carryOn(draft: Draft, end: number, candidate: Candidate): { x: number; 
   const y = ends.y[end];
   const ox = ends.outX[end];
   const oy = ends.outY[end];
-  const reach = width + slackMm;
+  // On the centreline within the slack it has met it there, however flat the angle: no place far ahead.
+  const reach = candidate.distance <= slackMm ? FLAT * slackMm : width + slackMm;
   let best = Number.POSITIVE_INFINITY;
   let place: { x: number; y: number; s: number } | null = null;
   const found = near.index?.search(
@@ -250,9 +287,12 @@ function carryOn(draft: Draft, end: number, candidate: Candidate): { x: number; 
     const t = (wx * vy - wy * vx) / cross;
     const s = (wx * oy - wy * ox) / cross;
     const tolerance = slackMm / pieces.length[i];
-    if (t < -slackMm || t > reach || s < -tolerance || s > 1 + tolerance || t >= best) continue;
-    best = t;
+    if (t < -slackMm || t > reach || s < -tolerance || s > 1 + tolerance) continue;
     const share = Math.min(1, Math.max(0, s));
+    // A hit just past a vertex gives way to one on the piece that goes on from there.
+    const rank = share === s ? t : t + slackMm;
+    if (rank >= best) continue;
+    best = rank;
     place = {
       x: pieces.x1[i] + share * vx,
       y: pieces.y1[i] + share * vy,

@@ -1,20 +1,10 @@
 import { describe, expect, it } from 'vitest';
 import { buildNetwork } from '../../src/network/build.ts';
 import type { Network } from '../../src/network/types.ts';
+import { randomFrom } from '../solve/graphs.ts';
 import { type ChannelSpec, chipOf, type PortSpec } from './chip-of.ts';
 
 /** Ends of several strokes at one place (rule 3), in drawings whose answer is known by construction. */
-
-/** A seeded sequence of numbers in [0, 1) (mulberry32). */
-function randomOf(seed: number): () => number {
-  let state = seed >>> 0;
-  return () => {
-    state = (state + 0x6d2b79f5) >>> 0;
-    let t = Math.imul(state ^ (state >>> 15), state | 1);
-    t ^= t + Math.imul(t ^ (t >>> 7), t | 61);
-    return ((t ^ (t >>> 14)) >>> 0) / 4294967296;
-  };
-}
 
 const rounded = (value: number, decimals: number): number => Number(value.toFixed(decimals));
 
@@ -73,7 +63,7 @@ function feedersOnMain(random: () => number, off: (half: number) => number) {
 
 describe('a bundle of ends', () => {
   it('on the centreline of an oblique main joins all of it, whatever the rounding', () => {
-    const random = randomOf(11);
+    const random = randomFrom(11);
     for (let run = 0; run < 150; run++) {
       const { channels, ports, expected } = feedersOnMain(random, () => 0);
       const network = buildNetwork(chipOf(channels, ports));
@@ -94,7 +84,7 @@ describe('a bundle of ends', () => {
   });
 
   it('on the wall of a main joins all of it, each member carried on alone', () => {
-    const random = randomOf(12);
+    const random = randomFrom(12);
     for (let run = 0; run < 150; run++) {
       const { channels, ports } = feedersOnMain(random, (half) => half);
       const network = buildNetwork(chipOf(channels, ports));
@@ -120,7 +110,7 @@ describe('a bundle of ends', () => {
       [3, 3],
       [-3, 2],
     ];
-    const random = randomOf(13);
+    const random = randomFrom(13);
     for (let run = 0; run < 60; run++) {
       const offset = 10 ** -(3.1 + 9 * random());
       const used = arms.slice(0, 3 + Math.floor(random() * 4));
