@@ -69,9 +69,8 @@ function endGroups({ trace }: Network): number[][] {
 }
 
 function toTip(network: Network, members: readonly number[]): Tip | null {
-  const { near, endFate } = network.trace;
-  const { half } = near.pieces;
-  const ends = members.filter((end) => endFate[end] !== 'left out');
+  const { half } = network.trace.near.pieces;
+  const ends = members.filter((end) => !isLeftOut(network, end));
   if (ends.length === 0) return null;
   const places = ends.map((end) => ({ end, ...endPlace(network, end) }));
   let sumX = 0;
@@ -89,13 +88,19 @@ function toTip(network: Network, members: readonly number[]): Tip | null {
   const [{ x, y }] = byWidth;
   return {
     ends: byWidth.map(({ end }) => end),
-    leftOut: members.filter((end) => endFate[end] === 'left out'),
+    leftOut: members.filter((end) => isLeftOut(network, end)),
     x,
     y,
     outX,
     outY,
     kind: oneSided ? 'end' : 'fan',
   };
+}
+
+/** A stroke left out whole may have been so from its other end. */
+function isLeftOut({ trace: { endFate, firstArc } }: Network, end: number): boolean {
+  const c = end >> 1;
+  return endFate[end] === 'left out' || (firstArc[c] === firstArc[c + 1] && endFate[end ^ 1] === 'left out');
 }
 
 /** Place of an end and unit direction out of its channel. */
