@@ -6,6 +6,7 @@ import type { Layout } from '../layout/types.ts';
 import { isPattern, layerKey } from '../runsheet/names.ts';
 import { formatMm } from '../runsheet/shown.ts';
 import { type PillarField, pillarFields } from './pillars.ts';
+import { NO_LAYER, proposePlanes } from './planes.ts';
 import { commentText, isDraftable, keyText } from './yaml-text.ts';
 
 export interface DraftInput {
@@ -27,9 +28,10 @@ const MOST_BYTES = 900_000;
 export function draftRunSheet({ layout, file, tool }: DraftInput): string {
   const chip = assembleChip({ layout, sheet: null, file, layoutSha256: '0'.repeat(64) });
   const fields = pillarFields(chip);
+  const layers = layerLines(chip, layout);
   const whole = [
     ...head(chip, layout, tool, fields),
-    ...layerLines(chip, layout),
+    ...layers,
     ...portLines(chip, layout, fields),
     ...channelLines(chip, layout),
     ...rest(chip, fields),
@@ -37,7 +39,7 @@ export function draftRunSheet({ layout, file, tool }: DraftInput): string {
   if (Buffer.byteLength(whole) <= MOST_BYTES) return `${whole}\n`;
   const short = [
     ...head(chip, layout, tool, fields),
-    ...layerLines(chip, layout),
+    ...layers,
     ...portLines(chip, layout, fields),
     'channels: # the drawing has too many to list here; give windows to those that need them, * matches any run of characters',
     ...WINDOW_EXAMPLE,
@@ -138,17 +140,27 @@ function layerLines(chip: Chip, layout: Layout): string[] {
   }
   const needed =
     loose > 0 ? `; ${counted(loose, 'channel')} ${loose === 1 ? 'lies' : 'lie'} in no layer` : '';
+  const keys = [...layers.keys()];
+  const layerOf = (channel: number): number => {
+    const { groups } = layout.items[chip.channels[channel].ordinal];
+    return groups.length === 0 ? NO_LAYER : keys.indexOf(layerKey(groups[0]));
+  };
+  const drawnName = (layer: number): string => layers.get(keys[layer])?.name ?? '';
+  const planes = proposePlanes(chip, layerOf, (layer) => layer !== NO_LAYER && isDraftable(drawnName(layer)));
+  const nameOf = (layer: number): string =>
+    layer === NO_LAYER ? 'the strokes in no layer' : commentText(drawnName(layer));
   return [
     `depth: # fill in: etch depth of every layer that is given none below, for example 50 um${needed}`,
     'layers: # depth of each layer; also profile: isotropic (wet-etched), plane: top, or the word ignore for a layer that is not read',
-    ...[...layers.values()].map(layerLine),
+    ...planes.assumptions(nameOf).map((text) => `  # ${text}`),
+    ...[...layers.values()].map((layer, i) => layerLine(layer, planes.of.get(i) ?? null)),
     '',
   ];
 }
 
 const MOST_INNER = 8;
 
-function layerLine({ name, inner, channels, withDepth }: DrawnLayer): string {
+function layerLine({ name, inner, channels, withDepth }: DrawnLayer, plane: string | null): string {
   const groups = [...inner].slice(0, MOST_INNER).map(commentText);
   const holds =
     groups.length === 0
@@ -158,7 +170,9 @@ function layerLine({ name, inner, channels, withDepth }: DrawnLayer): string {
   const about = `${counted(channels, 'channel')}${holds}${drawn}`;
   if (!isDraftable(name))
     return `# ${commentText(name)}: this name can't stand in a run sheet; rename the layer: ${about}`;
-  return `  ${keyText(name)}: {} # fill in: { depth: 50 um }; ${about}`;
+  return plane === null
+    ? `  ${keyText(name)}: {} # fill in: { depth: 50 um }; ${about}`
+    : `  ${keyText(name)}: { plane: ${plane} } # plane assumed; fill in: { depth: 50 um, plane: ${plane} }; ${about}`;
 }
 
 function portLines(chip: Chip, layout: Layout, fields: readonly PillarField[]): string[] {

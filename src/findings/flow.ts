@@ -1,4 +1,5 @@
 import type { FindingContext } from './context.ts';
+import { deadPartAt } from './dead-parts.ts';
 import { middleOfReach, othersText, reachesOf, reachNames, worstReach } from './reaches.ts';
 import { found, isBelow, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
@@ -13,18 +14,29 @@ export const flowRules: readonly Rule[] = [
 /** Share of the chip's median flow below which a reach is called stagnant. */
 const STAGNANT_SHARE = 1e-3;
 
-/** One finding per channel, at its stillest reach. Dead ends, sealed and unset ports are meant to stand still. */
+/**
+ * One finding per channel, at its stillest reach. Dead ends, sealed and unset ports are meant to stand still; of a part
+ * whose ports have no way to others, dead-port speaks.
+ */
 function stagnant(context: FindingContext): RuleOutcome {
   const { network, flow, chip } = context;
   if (flow === null) return notRun('stagnant', 'nothing was solved');
   const isDead = onTheWayToADeadEnd(context);
+  for (let reach = 0; reach < network.reachCount; reach++) {
+    if (deadPartAt(context, flow.nodePart[network.reachFrom[reach]]) !== undefined) isDead[reach] = 1;
+  }
   const flows: number[] = [];
+  let largest = 0;
   for (let reach = 0; reach < network.reachCount; reach++) {
     const magnitude = Math.abs(flow.reachFlow[reach]);
-    if (isDead[reach] === 0 && !Number.isNaN(magnitude)) flows.push(magnitude);
+    if (isDead[reach] === 1 || Number.isNaN(magnitude)) continue;
+    flows.push(magnitude);
+    largest = Math.max(largest, magnitude);
   }
   if (flows.length === 0) return notRun('stagnant', 'no flow in the chip is known');
-  const median = medianOf(Float64Array.from(flows));
+  if (largest === 0) return notRun('stagnant', 'nothing flows anywhere in the chip');
+  // What stands still does not count: where most of the chip does, it would make nought the measure of the rest.
+  const median = medianOf(Float64Array.from(flows.filter((one) => one > NO_FLOW_SHARE * largest)));
   const show = showFor(context);
   const findings: Finding[] = [];
   chip.channels.forEach((_, c) => {
@@ -55,7 +67,7 @@ function stagnant(context: FindingContext): RuleOutcome {
   return found(findings);
 }
 
-/** Below this share of the median a flow is what rounding left of a balance. */
+/** Below this share of the median, and of the largest, a flow is what rounding left of a balance. */
 const NO_FLOW_SHARE = 1e-9;
 
 /**

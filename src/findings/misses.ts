@@ -1,22 +1,25 @@
+import { distanceToSegment } from '../geometry/segment.ts';
 import type { Network } from '../network/types.ts';
-import { closestPoints } from './closest.ts';
+import { closestPoints, nearer } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 import { gapOfEnds, gapOfEndToHole, gapToEnd, gapToHole, type PaintedEnd, paintedEnd } from './painted.ts';
 import { byPair, pairKey } from './pairs.ts';
-import { channelPaths, routeLength } from './paths.ts';
+import { isNearAlong, isNearPort, pointOn } from './paths.ts';
 import { isAbove, isBelow } from './rule.ts';
 import type { ThinWall } from './thin.ts';
+import { endPlace, type Tip, tipOfEnd, tipsOf } from './tips.ts';
 
-/** An open end that just misses a strip or a well. */
+/** A tip that just misses a strip or a well. */
 export interface NearMiss {
-  /** 2·centreline, + 1 at the last point. */
+  readonly tip: Tip;
+  /** The tip's first end: 2·centreline, + 1 at the last point. */
   readonly end: number;
   readonly centreline: number;
   /** Centreline that it misses, −1 when it is a well. */
   readonly missed: number;
   /** Port that it misses, −1 when it is a channel. */
   readonly port: number;
-  /** The other channel's open end, when it is that which is missed; −1 otherwise. */
+  /** The other channel's end at a tip, when it is that which is missed; −1 otherwise. */
   readonly missedEnd: number;
   /** Between painted strokes, mm; 0 where they touch. */
   readonly gapMm: number;
@@ -27,49 +30,25 @@ export interface NearMiss {
   readonly mark: readonly [number, number, number, number];
 }
 
-/** All near misses, at most one for each open end; two open ends that miss each other are one. */
+/** All near misses, at most one for each tip; two tips that miss each other are one. */
 export const nearMisses: (context: FindingContext) => readonly NearMiss[] = oncePerContext((context) => {
   const misses: NearMiss[] = [];
-  const byEnd = new Map<number, NearMiss>();
-  for (const end of openEnds(context.network)) {
-    const miss = findMiss(context, end);
-    if (miss === null) continue;
-    const mutual = byEnd.get(miss.missedEnd);
-    if (mutual !== undefined && mutual.missedEnd === end) {
+  const byTip = new Map<number, NearMiss>();
+  const tipAt = tipOfEnd(context);
+  const missedTip = ({ missedEnd }: NearMiss): number => (missedEnd < 0 ? -1 : tipAt[missedEnd]);
+  tipsOf(context).forEach((tip, t) => {
+    const miss = findMiss(context, tip);
+    if (miss === null) return;
+    const mutual = byTip.get(missedTip(miss));
+    if (mutual !== undefined && missedTip(mutual) === t) {
       if (miss.pointsAtIt && !mutual.pointsAtIt) misses[misses.indexOf(mutual)] = miss;
-      continue;
+      return;
     }
-    byEnd.set(end, miss);
+    byTip.set(t, miss);
     misses.push(miss);
-  }
+  });
   return misses;
 });
-
-/** Ends of channels that meet no port and no channel. */
-export function openEnds({ trace }: Network): number[] {
-  const ends: number[] = [];
-  trace.endFate.forEach((fate, end) => {
-    if (fate === 'open') ends.push(end);
-  });
-  return ends;
-}
-
-/** Place of an end and unit direction out of its channel. */
-export function endPlace({ trace }: Network, end: number) {
-  const { pieces } = trace.near;
-  const c = end >> 1;
-  const atStart = (end & 1) === 0;
-  const piece = atStart ? pieces.firstPiece[c] : pieces.firstPiece[c + 1] - 1;
-  const sign = atStart ? -1 : 1;
-  return {
-    piece,
-    x: atStart ? pieces.x1[piece] : pieces.x2[piece],
-    y: atStart ? pieces.y1[piece] : pieces.y2[piece],
-    outX: (sign * (pieces.x2[piece] - pieces.x1[piece])) / pieces.length[piece],
-    outY: (sign * (pieces.y2[piece] - pieces.y1[piece])) / pieces.length[piece],
-    s: atStart ? 0 : pieces.centrelineLength[c],
-  };
-}
 
 export function paintedEndOf(network: Network, end: number): PaintedEnd {
   const { chip, trace } = network;
@@ -91,9 +70,10 @@ export function replacesWall(context: FindingContext, wall: ThinWall): boolean {
   const { pieces } = network.trace.near;
   return (missesByPair(context).get(pairKey(wall.centrelineA, wall.centrelineB)) ?? []).some((miss) => {
     if (wall.gapMm <= 0 && !miss.pointsAtIt) return false;
-    return (
-      isAtEnd(miss.centreline, miss.end, miss.missed) ||
-      (miss.missedEnd >= 0 && isAtEnd(miss.missed, miss.missedEnd, miss.centreline))
+    return miss.tip.ends.some(
+      (end) =>
+        isAtEnd(end >> 1, end, miss.missed) ||
+        (miss.missedEnd >= 0 && isAtEnd(miss.missed, miss.missedEnd, end >> 1)),
     );
 
     function isAtEnd(own: number, end: number, other: number): boolean {
@@ -111,7 +91,9 @@ export function replacesWall(context: FindingContext, wall: ThinWall): boolean {
 
 const missesByPair = oncePerContext((context) =>
   byPair(
-    nearMisses(context).filter(({ port }) => port < 0),
+    nearMisses(context)
+      .filter(({ port }) => port < 0)
+      .flatMap((miss) => miss.tip.ends.map((end) => ({ ...miss, centreline: end >> 1 }))),
     ({ centreline }) => centreline,
     ({ missed }) => missed,
   ),
@@ -122,45 +104,50 @@ const MOST_WIDTH_MM = 0.5;
 
 const COS_45 = Math.SQRT1_2;
 
-function findMiss(context: FindingContext, end: number): NearMiss | null {
+function findMiss(context: FindingContext, tip: Tip): NearMiss | null {
   const { chip, network } = context;
   const { near } = network.trace;
   const { pieces, index } = near;
+  const [end] = tip.ends;
   const c = end >> 1;
-  const place = endPlace(network, end);
+  const places = tip.ends.map((member) => endPlace(network, member));
+  const [place] = places;
+  const own = new Set(places.map(({ piece }) => piece));
   const channel = chip.channels[pieces.channel[place.piece]];
   const half = pieces.half[place.piece];
   const minWall = chip.limits.minWallM(Number.isNaN(channel.depthMm) ? 0 : channel.depthMm / 1e3);
   const minWallMm = minWall === null ? 0 : minWall.value * 1e3;
   const limitMm = Math.max(minWallMm, Math.min(2 * half, MOST_WIDTH_MM));
-  const painted = paintedEndOf(network, end);
+  // Of strokes that come from one side the widest paints the tip; those of a fan each paint their part.
+  const painted = (tip.kind === 'end' ? [end] : tip.ends).map((member) => paintedEndOf(network, member));
   let best: NearMiss | null = null;
 
-  const [ax, ay, bx, by] = painted.face;
-  const around = limitMm + painted.radius;
+  const around = limitMm + half * Math.SQRT2 + half;
   const found = index?.search(
-    Math.min(ax, bx) - around,
-    Math.min(ay, by) - around,
-    Math.max(ax, bx) + around,
-    Math.max(ay, by) + around,
-    (i) => pieces.plane[i] === channel.plane && i !== place.piece,
+    tip.x - around,
+    tip.y - around,
+    tip.x + around,
+    tip.y + around,
+    (i) => pieces.plane[i] === channel.plane && !own.has(i) && !leftOutPieces(context).has(i),
   );
   for (const i of found ?? []) {
-    const gap = gapToEnd(chip, pieces, i, painted);
+    const gap = painted.map((face) => gapToEnd(chip, pieces, i, face)).reduce(nearer);
     if (!isBelow(gap.distanceMm, limitMm)) continue;
     // Seen from the middle of the end, the nearest painted point says where it points and how far it must go.
-    const aim = gapToHole(chip, pieces, i, { xMm: place.x, yMm: place.y, radiusMm: 0 });
+    const aim = gapToHole(chip, pieces, i, { xMm: tip.x, yMm: tip.y, radiusMm: 0 });
     const onLine = closestPoints(
-      [place.x, place.y, place.x, place.y],
+      [tip.x, tip.y, tip.x, tip.y],
       [pieces.x1[i], pieces.y1[i], pieces.x2[i], pieces.y2[i]],
     );
     const t = pieces.start[i] + Math.hypot(onLine.x2 - pieces.x1[i], onLine.y2 - pieces.y1[i]);
     const target = aim.distanceMm > 1e-9 ? { x: aim.x1, y: aim.y1 } : { x: onLine.x2, y: onLine.y2 };
     const pointsAtIt = pointsAt(target.x, target.y);
     const apartMm = 4 * (half + pieces.half[i] + minWallMm);
-    // What it leads to by a short way (its own last bend, its own junction) it does not miss, unless it points back at it.
-    if (!pointsAtIt && isNearAlong(pieces.centreline[i], t, apartMm)) continue;
+    if (!mayMiss(pointsAtIt, () => isNearAlong(context, c, place.s, pieces.centreline[i], t, apartMm)))
+      continue;
+    if (tip.kind === 'fan' && !recedesFrom((x, y) => distanceToPiece(x, y, i))) continue;
     consider({
+      tip,
       end,
       centreline: c,
       missed: pieces.centreline[i],
@@ -173,13 +160,15 @@ function findMiss(context: FindingContext, end: number): NearMiss | null {
       mark: [gap.x1, gap.y1, gap.x2, gap.y2],
     });
   }
-  for (const p of portsNear(context, place.x, place.y, limitMm + half * Math.SQRT2)) {
+  for (const p of portsNear(context, tip.x, tip.y, limitMm + half * Math.SQRT2)) {
     const port = chip.ports[p];
-    const gap = gapOfEndToHole(painted, port);
+    const gap = painted.map((face) => gapOfEndToHole(face, port)).reduce(nearer);
     if (!isBelow(gap.distanceMm, limitMm)) continue;
     const pointsAtIt = pointsAt(port.xMm, port.yMm);
-    if (!pointsAtIt && isNearPort(p, 4 * (2 * half + minWallMm))) continue;
+    if (!mayMiss(pointsAtIt, () => isNearPort(context, c, place.s, p, 4 * (2 * half + minWallMm)))) continue;
+    if (tip.kind === 'fan' && !recedesFrom((x, y) => Math.hypot(x - port.xMm, y - port.yMm))) continue;
     consider({
+      tip,
       end,
       centreline: c,
       missed: -1,
@@ -187,7 +176,7 @@ function findMiss(context: FindingContext, end: number): NearMiss | null {
       missedEnd: -1,
       gapMm: Math.max(0, gap.distanceMm),
       limitMm,
-      reachMm: Math.max(0, Math.hypot(port.xMm - place.x, port.yMm - place.y) - port.radiusMm),
+      reachMm: Math.max(0, Math.hypot(port.xMm - tip.x, port.yMm - tip.y) - port.radiusMm),
       pointsAtIt,
       mark: [gap.x1, gap.y1, gap.x2, gap.y2],
     });
@@ -204,48 +193,60 @@ function findMiss(context: FindingContext, end: number): NearMiss | null {
     }
   }
 
+  /**
+   * What an end leads to by a short way (its own last bend, its own junction) it does not miss, unless it points back at
+   * it. A fan may be a mere corner: it misses only what it points at, and never what it leads to by a short way.
+   */
+  function mayMiss(pointsAtIt: boolean, isNear: () => boolean): boolean {
+    return tip.kind === 'end' ? pointsAtIt || !isNear() : pointsAtIt && !isNear();
+  }
+
   function pointsAt(x: number, y: number): boolean {
-    const dx = x - place.x;
-    const dy = y - place.y;
+    const dx = x - tip.x;
+    const dy = y - tip.y;
     const distance = Math.hypot(dx, dy);
-    return distance === 0 || !isAbove(COS_45 * distance, dx * place.outX + dy * place.outY + 1e-12);
+    return distance === 0 || !isAbove(COS_45 * distance, dx * tip.outX + dy * tip.outY + 1e-12);
   }
 
-  function isNearAlong(other: number, t: number, apartMm: number): boolean {
-    const paths = channelPaths(context);
-    const arcA = paths.arcAt(c, place.s);
-    const arcB = paths.arcAt(other, t);
-    if (arcA < 0 || arcB < 0) return false;
-    return paths.routes(arcA, arcB, apartMm).some((route) => routeLength(route, place.s, t) <= apartMm);
+  /** Whether every channel of a fan leads away from a thing: a corner beside a channel that turns with it does not. */
+  function recedesFrom(distanceTo: (x: number, y: number) => number): boolean {
+    const here = distanceTo(tip.x, tip.y);
+    return places.every(({ piece, s }) => {
+      const away = Math.min(4 * half, pieces.centrelineLength[pieces.centreline[piece]]);
+      const [x, y] = pointOn(network, pieces.centreline[piece], s === 0 ? away : s - away);
+      return distanceTo(x, y) >= here + LEAST_RECESSION * away;
+    });
   }
 
-  function isNearPort(p: number, apartMm: number): boolean {
-    const paths = channelPaths(context);
-    const arc = paths.arcAt(c, place.s);
-    if (arc < 0) return true;
-    const { arcFrom, arcTo } = network.trace;
-    const node = network.portNode[p];
-    return (
-      Math.min(
-        paths.between(node, paths.sideVertex[2 * arc], apartMm) + Math.abs(place.s - arcFrom[arc]),
-        paths.between(node, paths.sideVertex[2 * arc + 1], apartMm) + Math.abs(place.s - arcTo[arc]),
-      ) <= apartMm
-    );
+  function distanceToPiece(x: number, y: number, i: number): number {
+    return distanceToSegment(x, y, pieces.x1[i], pieces.y1[i], pieces.x2[i], pieces.y2[i]);
   }
 
-  /** The open end of the missed centreline, when it is its painted end that is nearest. */
+  /** The end of the missed centreline that stands at a tip, when it is its painted end that is nearest. */
   function missedEndOf(i: number, gapMm: number): number {
     const other = pieces.centreline[i];
     for (const e of [2 * other, 2 * other + 1]) {
-      if (network.trace.endFate[e] !== 'open' || endPlace(network, e).piece !== i) continue;
-      if (gapOfEnds(painted, paintedEndOf(network, e)).distanceMm <= gapMm + 1e-9) return e;
+      if (tipOfEnd(context)[e] < 0 || endPlace(network, e).piece !== i) continue;
+      const face = paintedEndOf(network, e);
+      if (painted.some((own) => gapOfEnds(own, face).distanceMm <= gapMm + 1e-9)) return e;
     }
     return -1;
   }
 }
 
+/** End pieces that rule 4 left out at tips: a stroke that is kept covers the same ground. */
+const leftOutPieces = oncePerContext(
+  (context) =>
+    new Set(
+      tipsOf(context).flatMap(({ leftOut }) => leftOut.map((end) => endPlace(context.network, end).piece)),
+    ),
+);
+
+/** A channel of a fan leads away from what the fan misses by at least this share of the way along it. */
+const LEAST_RECESSION = 0.15;
+
 /** Ports whose rim comes within a distance of a point: a sweep over the ports sorted by x. */
-function portsNear(context: FindingContext, x: number, y: number, withinMm: number): number[] {
+export function portsNear(context: FindingContext, x: number, y: number, withinMm: number): number[] {
   const { order, largest } = portsByX(context);
   const { ports } = context.chip;
   const reach = withinMm + largest;

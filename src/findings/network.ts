@@ -1,14 +1,16 @@
 import type { Chip } from '../chip/types.ts';
 import type { FlowPart, FlowState } from '../solve/types.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
+import { deadPorts, gapOfDeadPart, gapText } from './dead-ports.ts';
 import { partsOnOutlines } from './outlines.ts';
 import { middleOfReach } from './reaches.ts';
 import { found, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
-import { listText, showFor } from './words.ts';
+import { listText, portText, showFor } from './words.ts';
 
 /** Is every channel connected to something that drives it, and is the pressure fixed. */
 export const networkRules: readonly Rule[] = [
+  { names: ['dead-port'], run: (context) => ifAnyPortIsSet(context, 'dead-port', deadPorts) },
   { names: ['stray-channel'], run: (context) => ifAnyPortIsSet(context, 'stray-channel', strayChannels) },
   { names: ['no-reference'], run: (context) => ifAnyPortIsSet(context, 'no-reference', noReferences) },
 ];
@@ -64,7 +66,7 @@ function noReferences(context: FindingContext, flow: FlowState): Finding[] {
     switch (part.status) {
       case 'no-reference':
       case 'flows-do-not-add-up':
-        return [noReference(context, part)];
+        return [noReference(context, part, p)];
       case 'conflict':
         return [conflict(context, part)];
       case 'solved':
@@ -77,7 +79,7 @@ function noReferences(context: FindingContext, flow: FlowState): Finding[] {
   });
 }
 
-function noReference(context: FindingContext, part: FlowPart): Finding {
+function noReference(context: FindingContext, part: FlowPart, number: number): Finding {
   const { chip } = context;
   const show = showFor(context);
   const driven = part.ports.filter((port) => drives(chip, port));
@@ -86,6 +88,7 @@ function noReference(context: FindingContext, part: FlowPart): Finding {
   const outlet = driven.reduce((least, port) => (flowOf(chip, port) < flowOf(chip, least) ? port : least));
   const well = chip.ports[idle ?? outlet].name;
   const first = chip.ports[driven[0]];
+  const cutOff = cutOffFix(context, number);
   const rest = {
     at: { xMm: first.xMm, yMm: first.yMm },
     names: driven.map((port) => chip.ports[port].name),
@@ -94,15 +97,25 @@ function noReference(context: FindingContext, part: FlowPart): Finding {
   if (part.status === 'flows-do-not-add-up') {
     return toFinding('no-reference', 'blocker', {
       message: `only flows are given (${listText(given, 6)}) and they do not add up: ${show.text('flow', Math.abs(part.flowSumM3s))} more ${part.flowSumM3s > 0 ? 'goes in than comes out' : 'comes out than goes in'}, and nothing sets a pressure`,
-      fix: `let one well take what is left: set ${well} to open, or give it a pressure or a head instead of a flow`,
+      fix:
+        cutOff ??
+        `let one well take what is left: set ${well} to open, or give it a pressure or a head instead of a flow`,
       ...rest,
     });
   }
   return toFinding('no-reference', 'blocker', {
     message: `nothing sets a pressure: only flows are given (${listText(given, 6)}); they add up, so the flows are known, but the pressures only up to a constant`,
-    fix: `set one well to open, for example ${well}, or give one port a pressure or a head`,
+    fix: cutOff ?? `set one well to open, for example ${well}, or give one port a pressure or a head`,
     ...rest,
   });
+}
+
+/** Where a gap cuts the part off, opening a port of it would only hide the gap. Null where no gap does. */
+function cutOffFix(context: FindingContext, part: number): string | null {
+  const gap = gapOfDeadPart(context).get(part) ?? null;
+  return gap === null
+    ? null
+    : `join the part first to the open or held port it was meant to reach (see dead-port): the nearest gap is ${gapText(gap)}`;
 }
 
 /** Wells that open into each other are one node, which can hold one pressure only. */
@@ -127,25 +140,6 @@ function conflict(context: FindingContext, part: FlowPart): Finding {
     at: { xMm: first.xMm, yMm: first.yMm },
     names,
   });
-}
-
-function portText(context: FindingContext, port: number): string {
-  const show = showFor(context);
-  const { name, condition } = context.chip.ports[port];
-  switch (condition.kind) {
-    case 'flow':
-      return `${name} ${show.text('flow', condition.flowM3s)}`;
-    case 'pressure':
-      return `${name} ${show.text('pressure', condition.pressurePa)}`;
-    case 'head':
-      return `${name} ${show.text('length', condition.headM)} of head`;
-    case 'open':
-    case 'sealed':
-    case 'unset':
-      return `${name} ${condition.kind}`;
-    default:
-      return condition satisfies never;
-  }
 }
 
 function flowOf({ ports }: Chip, port: number): number {

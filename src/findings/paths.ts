@@ -1,6 +1,6 @@
 import { pieceAt } from '../geometry/pieces.ts';
 import type { Network } from '../network/types.ts';
-import { oncePerContext } from './context.ts';
+import { type FindingContext, oncePerContext } from './context.ts';
 
 /**
  * Distances along the channels: how far the fluid has to go from one place on a centreline to another, over whatever
@@ -243,4 +243,42 @@ export function sidePoint(network: Network, side: number): readonly [number, num
   const { trace } = network;
   const arc = side >> 1;
   return pointOn(network, trace.arcCentreline[arc], (side & 1) === 0 ? trace.arcFrom[arc] : trace.arcTo[arc]);
+}
+
+/** Whether the way along the channels from one place on a centreline to another is within a length (mm). */
+export function isNearAlong(
+  context: FindingContext,
+  centreline: number,
+  s: number,
+  other: number,
+  t: number,
+  withinMm: number,
+): boolean {
+  const paths = channelPaths(context);
+  const arcA = paths.arcAt(centreline, s);
+  const arcB = paths.arcAt(other, t);
+  if (arcA < 0 || arcB < 0) return false;
+  return paths.routes(arcA, arcB, withinMm).some((route) => routeLength(route, s, t) <= withinMm);
+}
+
+/** Whether the way along the channels from a place on a centreline to a well is within a length (mm). */
+export function isNearPort(
+  context: FindingContext,
+  centreline: number,
+  s: number,
+  port: number,
+  withinMm: number,
+): boolean {
+  const { network } = context;
+  const { arcFrom, arcTo } = network.trace;
+  const paths = channelPaths(context);
+  const arc = paths.arcAt(centreline, s);
+  if (arc < 0) return true;
+  const node = network.portNode[port];
+  return (
+    Math.min(
+      paths.between(node, paths.sideVertex[2 * arc], withinMm) + Math.abs(s - arcFrom[arc]),
+      paths.between(node, paths.sideVertex[2 * arc + 1], withinMm) + Math.abs(s - arcTo[arc]),
+    ) <= withinMm
+  );
 }

@@ -62,15 +62,25 @@ const portMeetings = oncePerContext(({ network, chip }): readonly PortMeetings[]
   });
 });
 
-function loosePorts(context: FindingContext): Finding[] {
+/** Wells that no channel comes to, and that no end just misses. */
+export const loosePortSet: (context: FindingContext) => ReadonlySet<number> = oncePerContext((context) => {
   const { chip, network } = context;
   const missed = new Set(nearMisses(context).map(({ port }) => port));
-  const onOutlines = portsOnOutlines(context);
   const meetings = portMeetings(context);
+  const loose = new Set<number>();
+  for (let p = 0; p < chip.ports.length; p++) {
+    const isFirst = network.nodePort[network.portNode[p]] === p;
+    if (meetings[p].channels.size === 0 && isFirst && !missed.has(p)) loose.add(p);
+  }
+  return loose;
+});
+
+function loosePorts(context: FindingContext): Finding[] {
+  const { chip } = context;
+  const onOutlines = portsOnOutlines(context);
   const findings: Finding[] = [];
   chip.ports.forEach((port, p) => {
-    if (meetings[p].channels.size > 0 || network.nodePort[network.portNode[p]] !== p || missed.has(p)) return;
-    if (onOutlines.has(port.name)) return;
+    if (!loosePortSet(context).has(p) || onOutlines.has(port.name)) return;
     const nearest = nearestPiece(context, port);
     const near =
       nearest === null

@@ -2,6 +2,7 @@ import { cornerRules } from './corners.ts';
 import { edgeRules } from './edge.ts';
 import { endRules } from './ends.ts';
 import { flowRules } from './flow.ts';
+import { layerRules } from './layers.ts';
 import { levelRules } from './level-sensitive.ts';
 import { networkRules } from './network.ts';
 import { notComputedRules } from './not-computed.ts';
@@ -27,6 +28,7 @@ export const RULES: readonly Rule[] = [
   ...obstacleRules,
   ...wallRules,
   ...strokeRules,
+  ...layerRules,
   ...endRules,
   ...portRules,
   ...edgeRules,

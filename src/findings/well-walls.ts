@@ -33,7 +33,7 @@ export function findWellWalls(
   const missed = new Set(
     nearMisses(context)
       .filter(({ port }) => port >= 0)
-      .map(({ centreline, port }) => `${centreline} ${port}`),
+      .flatMap(({ tip, port }) => tip.ends.map((end) => `${end >> 1} ${port}`)),
   );
   chip.ports.forEach((port, p) => {
     const r = port.radiusMm + widest;

@@ -59,3 +59,28 @@ export function listText(names: readonly string[], most = 3): string {
 export function countText(count: number, one: string, many = `${one}s`): string {
   return `${count} ${count === 1 ? one : many}`;
 }
+
+/** A port with what the run sheet does to it: "feed 12 kPa", "drain open". */
+export function portText(context: FindingContext, port: number): string {
+  return `${context.chip.ports[port].name} ${conditionText(context, port)}`;
+}
+
+/** What the run sheet does to a port: "12 kPa", "40 mm of head", "open". */
+export function conditionText(context: FindingContext, port: number): string {
+  const show = showFor(context);
+  const { condition } = context.chip.ports[port];
+  switch (condition.kind) {
+    case 'flow':
+      return show.text('flow', condition.flowM3s);
+    case 'pressure':
+      return show.text('pressure', condition.pressurePa);
+    case 'head':
+      return `${show.text('length', condition.headM)} of head`;
+    case 'open':
+    case 'sealed':
+    case 'unset':
+      return condition.kind;
+    default:
+      return condition satisfies never;
+  }
+}

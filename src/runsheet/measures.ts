@@ -48,6 +48,8 @@ export const RULE_MEASURES: ReadonlyMap<string, RuleMeasure> = new Map([
         'loose-port',
         'swallowed-channel',
         'stray-channel',
+        'dead-port',
+        'layers-cross',
         'assumed-scale',
         'unset-port',
         'default-depth',

@@ -67,6 +67,38 @@ describe('rillcheck draft', () => {
     },
   );
 
+  it('proposes planes for layers that cross, says what it assumes, and check then sees no crossing', async () => {
+    const strokes = (d: string): string => `<path d="${d}" fill="none" stroke="#000" stroke-width="0.2"/>`;
+    put(
+      'valves.svg',
+      `<svg xmlns="http://www.w3.org/2000/svg" width="30mm" height="30mm" viewBox="0 0 30 30"><g id="flow">${strokes('M2 15H28')}</g><g id="control">${strokes('M10 2V28')}${strokes('M20 2V28')}</g><g id="vents">${strokes('M15 2V14.9')}</g><g id="over">${strokes('M5 5L25 25')}</g></svg>`,
+    );
+    const crossed = async (): Promise<string[][]> =>
+      JSON.parse((await rillcheck('check', 'valves.svg', '--json')).out).findings.flatMap(
+        ({ rule, names }: { rule: string; names: string[] }) =>
+          rule === 'layers-cross' ? [names.slice(0, 2)] : [],
+      );
+    expect(await crossed()).toEqual([
+      ['control', 'over'],
+      ['flow', 'control'],
+      ['flow', 'over'],
+    ]);
+    await rillcheck('draft', 'valves.svg');
+    const text = read('valves.run.yaml');
+    expect(text).toMatch(/# assumed: flow and control cross in 2 places where neither ends/);
+    const planes = Object.entries(parseRunSheet(text, 'valves.run.yaml').layers).map(([name, layer]) => [
+      name,
+      layer.kind === 'etched' ? layer.plane : '',
+    ]);
+    expect(planes).toEqual([
+      ['flow', null],
+      ['control', 'top'],
+      ['vents', null],
+      ['over', 'top-2'],
+    ]);
+    expect(await crossed()).toEqual([]);
+  });
+
   it('is ready for a check once what it marks is filled in', async () => {
     put('culture.svg', readFileSync(join(DEMOS, 'culture.svg'), 'utf8'));
     await rillcheck('draft', 'culture.svg');

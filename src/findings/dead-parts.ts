@@ -1,0 +1,144 @@
+import { drivesOf, type PortDrive } from '../solve/drives.ts';
+import { type FindingContext, oncePerContext } from './context.ts';
+import { nearMisses } from './misses.ts';
+import { partsOnDrawing } from './parts.ts';
+import { loosePortSet } from './ports.ts';
+import { tipsOf } from './tips.ts';
+
+/**
+ * A connected part in which nothing can flow as the run sheet means it, because its driven and open ports have no way to
+ * another part's. Judged by topology: a part whose ports stand at equal pressures carries nothing, and is not dead.
+ */
+export interface DeadPart {
+  /** Index into flow.parts. */
+  readonly part: number;
+  /** Driven and open ports of the part. */
+  readonly ports: readonly number[];
+  readonly kind: DeadKind;
+  readonly severity: 'blocker' | 'caution';
+}
+
+/**
+ * alone: all its driven and open ports are one port, or one hole.
+ * undriven: held at one pressure all over, cut off from what drives the chip.
+ * unheld: only flows are given, cut off from what is held or open.
+ */
+export type DeadKind = 'alone' | 'undriven' | 'unheld';
+
+/** The dead parts of the chip, by number; none while nothing is solved. Cost: linear in the ports and parts. */
+export const deadParts: (context: FindingContext) => readonly DeadPart[] = oncePerContext((context) => {
+  const { chip, flow } = context;
+  if (flow === null) return [];
+  const drives = drivesOf(chip);
+  const all = flow.parts.map(({ ports }, part) => stateOf(context, drives, part, ports));
+  return all.flatMap((one): DeadPart[] => {
+    if (one.kind === 'live' || one.kind === 'stray' || isLoose(context, one)) return [];
+    const { part, ports, kind } = one;
+    if (kind === 'alone') return [{ part, ports, kind, severity: severityAlone(context, ports) }];
+    return isCutOff(context, all, one) ? [{ part, ports, kind, severity: 'blocker' }] : [];
+  });
+});
+
+/** The dead part of that number, if it is one. */
+export function deadPartAt(context: FindingContext, part: number): DeadPart | undefined {
+  return byPart(context).get(part);
+}
+
+const byPart = oncePerContext((context) => new Map(deadParts(context).map((dead) => [dead.part, dead])));
+
+interface PartState {
+  readonly part: number;
+  readonly ports: readonly number[];
+  readonly kind: DeadKind | 'live' | 'stray';
+  readonly hasFlow: boolean;
+  /** Pressures held in it, Pa. */
+  readonly held: ReadonlySet<number>;
+  readonly planes: ReadonlySet<number>;
+}
+
+function stateOf(
+  context: FindingContext,
+  drives: readonly PortDrive[],
+  part: number,
+  partPorts: readonly number[],
+): PartState {
+  const { portNode } = context.network;
+  const ports = partPorts.filter((port) => drives[port].kind !== 'none');
+  const holes = new Set(ports.map((port) => portNode[port]));
+  const held = new Set<number>();
+  let hasFlow = false;
+  for (const port of ports) {
+    const drive = drives[port];
+    if (drive.kind === 'pressure') held.add(drive.pressurePa);
+    if (drive.kind === 'flow') hasFlow = true;
+  }
+  const kind =
+    ports.length === 0
+      ? 'stray'
+      : holes.size === 1
+        ? 'alone'
+        : held.size === 0
+          ? 'unheld'
+          : held.size === 1 && !hasFlow
+            ? 'undriven'
+            : 'live';
+  return { part, ports, kind, hasFlow, held, planes: planesOf(context, part) };
+}
+
+function planesOf(context: FindingContext, part: number): Set<number> {
+  const { pieces } = context.network.trace.near;
+  const { firstPiece, pieceOf } = partsOnDrawing(context);
+  const planes = new Set<number>();
+  for (let k = firstPiece[part]; k < firstPiece[part + 1]; k++) planes.add(pieces.plane[pieceOf[k]]);
+  return planes;
+}
+
+/** A well that no channel comes to is a loose port, and nothing more need be said of it. */
+function isLoose(context: FindingContext, { part, ports }: PartState): boolean {
+  const { firstPiece } = partsOnDrawing(context);
+  const { nodePort, portNode } = context.network;
+  return (
+    firstPiece[part + 1] === firstPiece[part] &&
+    ports.every((p) => loosePortSet(context).has(nodePort[portNode[p]]))
+  );
+}
+
+/** A port that is only held may be a control line; one that must pass fluid can't do so alone. */
+function severityAlone({ chip }: FindingContext, ports: readonly number[]): DeadPart['severity'] {
+  const mustFlow = ports.some((port) => {
+    const { condition, expect } = chip.ports[port];
+    return condition.kind === 'open' || condition.kind === 'flow' || expect !== null;
+  });
+  return mustFlow ? 'blocker' : 'caution';
+}
+
+/**
+ * Whether a part with several ports lacks what another part has, and the drawing shows that they were one: an end of it
+ * stands dead or just misses something, or there is a part in its plane that lacks what this one has. Else it may be a
+ * circuit of its own that rests, or that is pushed and pulled by two pumps.
+ */
+function isCutOff(context: FindingContext, all: readonly PartState[], one: PartState): boolean {
+  const others = all.filter(({ part }) => part !== one.part);
+  const gives = (other: PartState): boolean =>
+    one.kind === 'unheld'
+      ? other.held.size > 0
+      : other.hasFlow || [...other.held].some((p) => !one.held.has(p));
+  const givers = others.filter(gives);
+  if (givers.length === 0) return false;
+  if (standsDead(context).has(one.part)) return true;
+  const idle = givers.filter(({ kind }) => kind !== 'live');
+  const sharesPlane = idle.some(({ planes }) => [...planes].some((plane) => one.planes.has(plane)));
+  return sharesPlane || all.every(({ kind }) => kind !== 'live');
+}
+
+/** Parts with an end that stands dead, or at which something is just missed. */
+const standsDead = oncePerContext((context): ReadonlySet<number> => {
+  const { ofCentreline, ofPort } = partsOnDrawing(context);
+  const parts = new Set<number>();
+  for (const { ends, kind } of tipsOf(context)) if (kind === 'end') parts.add(ofCentreline[ends[0] >> 1]);
+  for (const { centreline, missed, port } of nearMisses(context)) {
+    parts.add(ofCentreline[centreline]);
+    parts.add(port >= 0 ? ofPort[port] : ofCentreline[missed]);
+  }
+  return parts;
+});
