@@ -102,7 +102,7 @@ describe('rillcheck pump', () => {
     const { code, err } = await rillcheck('pump', 'chip.svg', '-f', 'pdf', '-o', 'out');
     expect(err).toBe('');
     expect(code).toBe(0);
-    const { pages } = await readPdf(new Uint8Array(readFileSync(join(folder, 'out/chip.pdf'))));
+    const { pages } = await readPdf(new Uint8Array(readFileSync(join(folder, 'out/chip.pump.pdf'))));
     const page = pages.find(({ texts }) => texts.some(({ text }) => text === 'Pump settings'));
     const texts = page?.texts.map(({ text }) => text) ?? [];
     for (const text of [
@@ -129,7 +129,10 @@ describe('rillcheck pump', () => {
     expect(code).toBe(0);
     expect(out).toContain('pump settings, case grow');
     expect(out).toContain('residence time of lane keeps its window while in holds');
-    const result = v.parse(resultSchema, JSON.parse(readFileSync(join(folder, 'out/chip.json'), 'utf8')));
+    const result = v.parse(
+      resultSchema,
+      JSON.parse(readFileSync(join(folder, 'out/chip.pump.json'), 'utf8')),
+    );
     if (!('cases' in result)) throw new Error('no cases');
     expect(result.cases.map((one) => one.pump?.settings.length ?? null)).toEqual([1, 1, null]);
     const range = result.cases[1].pump?.settings[0].range;
@@ -139,7 +142,7 @@ describe('rillcheck pump', () => {
       ((range?.flow_min_m3_s ?? 0) + (range?.flow_max_m3_s ?? 0)) / 2,
       18,
     );
-    const { pages } = await readPdf(new Uint8Array(readFileSync(join(folder, 'out/chip.pdf'))));
+    const { pages } = await readPdf(new Uint8Array(readFileSync(join(folder, 'out/chip.pump.pdf'))));
     const texts = pages.flatMap((page) => page.texts.map(({ text }) => text));
     expect(pages[0].texts.map(({ text }) => text)).toContain('Cases compared');
     expect(texts).toContain('Pump settings, case seed');

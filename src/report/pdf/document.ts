@@ -1,5 +1,5 @@
 import type { Report } from '../report.ts';
-import { plural, verdictLine } from '../verdict-line.ts';
+import { casesLine, verdictLine } from '../verdict-line.ts';
 import { writeCases } from './cases.ts';
 import { writeCautions } from './cautions.ts';
 import { isoDate, pageContext } from './context.ts';
@@ -64,13 +64,11 @@ export function writePdf(report: Report, options: PdfOptions): Promise<Uint8Arra
   ]);
 }
 
-function headLine({ result, cases }: Report, title: string): string {
+function headLine(report: Report, title: string): string {
+  const { result, cases } = report;
   const { sheet } = cases[0].network.chip;
   const drawing = sheet === null ? '' : drawingText(sheet.drawing);
-  const verdict =
-    'cases' in result
-      ? `${plural(cases.length, 'case')}: ${result.verdict}`
-      : verdictLine(result.verdict, result.counts);
+  const verdict = 'cases' in result ? casesLine(report) : verdictLine(result.verdict, result.counts);
   return [title, drawing, verdict].filter((part) => part !== '').join('  ·  ');
 }
 

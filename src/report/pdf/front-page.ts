@@ -1,4 +1,5 @@
 import type { Chip } from '../../chip/types.ts';
+import { listText } from '../../findings/words.ts';
 import {
   formatBound,
   formatMm,
@@ -11,9 +12,10 @@ import {
 import { drawMap, mapNotes } from '../map.ts';
 import { cleanText } from '../plain-text.ts';
 import { hasWindow, outsideWindows, reachesThatMatter, windowTexts } from '../reach-values.ts';
+import { casesLeftOut } from '../report.ts';
 import type { PortRow, ReachRow } from '../result-schema.ts';
 import { plural, verdictCounts } from '../verdict-line.ts';
-import { BODY, depthFrom, isoDate, type PageContext, SMALL } from './context.ts';
+import { BODY, BODY_BOLD, depthFrom, isoDate, type PageContext, SMALL } from './context.ts';
 import { drawingText } from './document.ts';
 import { factsHeight, writeFacts } from './facts.ts';
 import { paintMap } from './paint-map.ts';
@@ -73,6 +75,14 @@ function writeVerdict({ paper, report, one }: PageContext, section: Element): vo
   paper.paragraph(section, drawing.join(', '), BODY);
   const counts = `${verdictCounts(part.counts)}, ${plural(part.counts.notes, 'note')}`;
   writeBanner(paper, section, part.verdict, counts);
+  const leftOut = casesLeftOut(report);
+  if (leftOut.length > 0) {
+    paper.paragraph(
+      section,
+      `Of this case alone. Not looked at: ${plural(leftOut.length, 'other case')} of the run sheet (${cleanText(listText(leftOut, 8))}).`,
+      BODY_BOLD,
+    );
+  }
   const listed =
     part.not_run.length === 0
       ? 'Every rule was run.'
