@@ -33,7 +33,12 @@ export function writePdf(report: Report, options: PdfOptions): Promise<Uint8Arra
   const { sheet } = cases[0].network.chip;
   const creator = `${result.tool.name} ${result.tool.version}`;
   const title = sheet?.title ?? result.layout.file;
-  const paper = new Paper({ ...options, title, subject: `Check of ${result.layout.file}`, creator });
+  const paper = new Paper({
+    ...options,
+    title,
+    subject: `${subjectOf(cases)} of ${result.layout.file}`,
+    creator,
+  });
   const contexts = cases.map((one) => pageContext(paper, report, one, options.date));
   writeCases(contexts);
   for (const context of contexts) {
@@ -64,12 +69,18 @@ export function writePdf(report: Report, options: PdfOptions): Promise<Uint8Arra
   ]);
 }
 
+function subjectOf(cases: Report['cases']): string {
+  if (cases.some(({ pump }) => pump !== undefined)) return 'Pump settings';
+  return cases.some(({ spread }) => spread !== undefined) ? 'Spread' : 'Check';
+}
+
 function headLine(report: Report, title: string): string {
   const { result, cases } = report;
   const { sheet } = cases[0].network.chip;
   const drawing = sheet === null ? '' : drawingText(sheet.drawing);
   const verdict = 'cases' in result ? casesLine(report) : verdictLine(result.verdict, result.counts);
-  return [title, drawing, verdict].filter((part) => part !== '').join('  ·  ');
+  const settings = cases.some(({ pump }) => pump !== undefined) ? 'at settings found, not given' : '';
+  return [title, drawing, verdict, settings].filter((part) => part !== '').join('  ·  ');
 }
 
 /** "C-114 revision B": what of it the run sheet gives. */

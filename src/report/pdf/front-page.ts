@@ -18,6 +18,7 @@ import { plural, verdictCounts } from '../verdict-line.ts';
 import { BODY, BODY_BOLD, depthFrom, isoDate, type PageContext, SMALL } from './context.ts';
 import { drawingText } from './document.ts';
 import { factsHeight, writeFacts } from './facts.ts';
+import { writeFoundBox } from './found-box.ts';
 import { paintMap } from './paint-map.ts';
 import { type Element, POINTS_PER_MM } from './paper.ts';
 import { SIGN_HEIGHT, writeBanner, writeSignatures } from './sign-off.ts';
@@ -75,6 +76,7 @@ function writeVerdict({ paper, report, one }: PageContext, section: Element): vo
   paper.paragraph(section, drawing.join(', '), BODY);
   const counts = `${verdictCounts(part.counts)}, ${plural(part.counts.notes, 'note')}`;
   writeBanner(paper, section, part.verdict, counts);
+  writeFoundBox(paper, section, [one]);
   const leftOut = casesLeftOut(report);
   if (leftOut.length > 0) {
     paper.paragraph(
