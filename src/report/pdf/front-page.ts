@@ -9,6 +9,7 @@ import {
   type Shown,
   type Unit,
 } from '../../runsheet/shown.ts';
+import { jointsText } from '../joints-text.ts';
 import { drawMap, mapNotes } from '../map.ts';
 import { cleanText } from '../plain-text.ts';
 import { hasWindow, outsideWindows, reachesThatMatter, windowTexts } from '../reach-values.ts';
@@ -168,7 +169,10 @@ export function portsTable(
     largest((port) => port.tubing_time_s),
   );
   const withTubing = all.some((port) => port.tubing_volume_m3 !== null);
-  const withJoints = all.some((port) => port.joint_flow_share !== null);
+  const withJoints = all.some(
+    ({ joint_flow_share, joint_pressure_share }) =>
+      joint_flow_share !== null || joint_pressure_share !== null,
+  );
   const number = (value: number | null, si: number): string =>
     value === null ? '–' : formatNumber(value / si);
   const columns: Column[] = [
@@ -184,9 +188,7 @@ export function portsTable(
         ] as const)
       : []),
     ...(withJoints
-      ? ([
-          { head: 'joints not resolved', unit: 'could move this flow by ±', align: 'right', width: 'fit' },
-        ] as const)
+      ? ([{ head: 'joints not resolved', unit: 'could move by ±', align: 'right', width: 'fit' }] as const)
       : []),
   ];
   const rows = shown.map((port) =>
@@ -197,10 +199,23 @@ export function portsTable(
       number(port.supply_pressure_pa, pressure.si),
       number(port.flow_m3_s, flow.si),
       ...(withTubing ? [number(port.tubing_volume_m3, volume.si), number(port.tubing_time_s, time.si)] : []),
-      ...(withJoints ? [formatBound(port.joint_flow_share)] : []),
+      ...(withJoints ? [jointText(port)] : []),
     ),
   );
   return { columns, rows };
+}
+
+/** "flow 2.2 %, pressure 3 %": of what is given nothing is said, for it does not move. */
+export function jointText({
+  joint_flow_share,
+  joint_pressure_share,
+}: Pick<PortRow, 'joint_flow_share' | 'joint_pressure_share'>): string {
+  const parts = [
+    joint_flow_share ? `flow ${formatBound(joint_flow_share)}` : '',
+    joint_pressure_share ? `pressure ${formatBound(joint_pressure_share)}` : '',
+  ].filter((part) => part !== '');
+  if (parts.length > 0) return parts.join(', ');
+  return joint_flow_share === null && joint_pressure_share === null ? '–' : formatBound(0);
 }
 
 const REACHES_SHOWN = 14;
@@ -221,6 +236,7 @@ function writeReachesThatMatter({ paper, one }: PageContext, section: Element, r
   const time = unit('residence_time', (row) => row.residence_time_s);
   const number = (value: number | null, { si }: Unit): string =>
     value === null ? '–' : formatNumber(value / si);
+  const withJoints = rows.some(({ joint_flow_share }) => joint_flow_share !== null);
   paper.heading(section, 3, windows ? 'Reaches with a window' : 'The most sheared reaches');
   drawTable(
     paper,
@@ -228,6 +244,9 @@ function writeReachesThatMatter({ paper, one }: PageContext, section: Element, r
     [
       { head: 'reach', align: 'left', width: 'share' },
       { head: 'flow', unit: flow.text, align: 'right', width: 'fit' },
+      ...(withJoints
+        ? ([{ head: 'joints move', unit: 'it by ±', align: 'right', width: 'fit' }] as const)
+        : []),
       { head: 'floor shear mean', unit: shear.text, align: 'right', width: 'fit' },
       { head: 'peak', unit: shear.text, align: 'right', width: 'fit' },
       { head: 'time mean', unit: time.text, align: 'right', width: 'fit' },
@@ -244,6 +263,7 @@ function writeReachesThatMatter({ paper, one }: PageContext, section: Element, r
         cells: [
           isOutside ? `✗ ${row.name}` : row.name,
           number(row.flow_m3_s, flow),
+          ...(withJoints ? [formatBound(row.joint_flow_share)] : []),
           number(row.wall_shear_floor_mean_pa, shear),
           number(row.wall_shear_floor_peak_pa, shear),
           number(row.residence_time_s, time),
@@ -263,6 +283,7 @@ function writeReachesThatMatter({ paper, one }: PageContext, section: Element, r
 export function inputFacts({ report, one, date }: PageContext): readonly (readonly [string, string])[] {
   const { chip } = one.network;
   const { layout, run_sheet, tool } = report.result;
+  const joints = jointsText(one.network.joints);
   return [
     ['layout', `${layout.file}, SHA-256 ${layout.sha256}`],
     [
@@ -278,7 +299,7 @@ export function inputFacts({ report, one, date }: PageContext): readonly (readon
       'joints',
       chip.joints === 'centreline'
         ? 'centreline: corners, bends and junctions add nothing of their own'
-        : 'resolved: each computed joint adds its end correction',
+        : `resolved: each computed joint adds its end correction${joints === null ? '' : `; ${joints}`}`,
     ],
     ['not read', ignoredText(chip)],
     ['written', `by ${tool.name} ${tool.version} on ${isoDate(date)}`],
