@@ -41,23 +41,27 @@ export async function refuseOverwriting(
 
 interface Place {
   readonly shown: string;
-  /** Real paths in one letter case: of the name itself, and of what it leads to. */
+  /** Folder and name in one letter case: of the name itself, and of what it leads to. */
   readonly keys: readonly string[];
   /** "device:number" of the file there; null where there is none. */
   readonly file: string | null;
 }
 
 async function lookAt(path: string, shown: string): Promise<Place> {
-  const named = join(await realFolder(dirname(path)), basename(path));
-  const [target, info] = await Promise.all([
-    realpath(path).catch(() => named),
-    stat(path, { bigint: true }).catch(() => null),
-  ]);
-  return {
-    shown,
-    keys: [foldCase(named), foldCase(target)],
-    file: info === null ? null : `${info.dev}:${info.ino}`,
-  };
+  const target = await realpath(path).catch(() => path);
+  return { shown, keys: [await keyOf(path), await keyOf(target)], file: await fileAt(path) };
+}
+
+/** Folders that differ in letter case alone are told apart where the disk does. */
+async function keyOf(path: string): Promise<string> {
+  const folder = dirname(path);
+  return `${(await fileAt(folder)) ?? (await realFolder(folder))}/${foldCase(basename(path))}`;
+}
+
+async function fileAt(path: string): Promise<string | null> {
+  // what can't be looked at can't have been read
+  const info = await stat(path, { bigint: true }).catch(() => null);
+  return info === null ? null : `${info.dev}:${info.ino}`;
 }
 
 /** Of a folder that is not there yet: what there is of it, and the rest as written. */
@@ -72,8 +76,8 @@ async function realFolder(folder: string): Promise<string> {
 }
 
 /** File systems that do not tell letter cases apart do not tell composed letters from decomposed ones either. */
-function foldCase(path: string): string {
-  return path.normalize('NFC').toLowerCase();
+function foldCase(name: string): string {
+  return name.normalize('NFC').toLowerCase();
 }
 
 function isSame(a: Place, b: Place): boolean {

@@ -13,6 +13,7 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import { run } from '../../src/cli.ts';
+import { InputError } from '../../src/errors.ts';
 import { readPdf } from '../report/read-pdf.ts';
 import { fakeIo } from './fake-io.ts';
 
@@ -173,6 +174,75 @@ describe('reports are named NAME[.COMMAND][.case-CASE].EXT', () => {
   });
 });
 
+describe('exit codes: 2 before 3 before 1', () => {
+  it('whatever is wrong with files, a layout, sheet or option that can not be used is 2; then a report not written is 3', async () => {
+    put('file', '');
+    const shut = ['-o', 'file'];
+    put('hold.run.yaml', SHEET.replace('depth: 100 um\n', ''));
+    const codeOf = async (args: readonly string[], env: Record<string, string> = {}): Promise<number> => {
+      const io = fakeIo(folder);
+      const world = Object.defineProperty({ ...io, env }, 'now', {
+        get: () => {
+          if ('SOURCE_DATE_EPOCH' in env) throw new InputError('SOURCE_DATE_EPOCH', 'is no time');
+          return new Date(0);
+        },
+      });
+      return run(args, world);
+    };
+    expect(await codeOf(['check', 'chip.svg', '-r', 'hold.run.yaml', '-f', 'none'])).toBe(1);
+    expect(await codeOf(['check', 'chip.svg', '-r', 'hold.run.yaml', ...shut])).toBe(3);
+    expect(
+      await codeOf(['check', 'chip.svg', '-r', 'hold.run.yaml', ...shut], { SOURCE_DATE_EPOCH: 'x' }),
+    ).toBe(2);
+    for (const wrong of [
+      ['--case', 'no'],
+      ['--detail', 'all'],
+      ['-f', 'docx'],
+      ['-f', ','],
+      ['--paper', 'a3'],
+      ['--colour', 'taste'],
+    ])
+      for (const command of COMMANDS) expect(await codeOf([command, 'chip.svg', ...shut, ...wrong])).toBe(2);
+    expect(await codeOf(['spread', 'chip.svg', ...shut, '--draws', '1'])).toBe(2);
+    expect(await codeOf(['spread', 'chip.svg', ...shut, '--draws', '10'])).toBe(3);
+    expect(
+      await codeOf([
+        'spread',
+        'chip.svg',
+        '-o',
+        'out',
+        '-f',
+        'csv',
+        '--draws',
+        '10',
+        '--samples',
+        'file/x.csv',
+      ]),
+    ).toBe(3);
+  });
+
+  it('--detail says how deep JSON goes, on stdout and in files', async () => {
+    const keys = async (detail: string): Promise<string[]> => {
+      const { out } = await rillcheck(
+        'check',
+        'chip.svg',
+        '--json',
+        '--detail',
+        detail,
+        '-f',
+        'json',
+        '-o',
+        'out',
+      );
+      expect(readFileSync(join(folder, 'out/chip.json'), 'utf8')).toBe(out);
+      return ['ports', 'nodes', 'reaches', 'segments'].filter((key) => key in JSON.parse(out));
+    };
+    expect(await keys('ports')).toEqual(['ports']);
+    expect(await keys('reaches')).toEqual(['ports', 'nodes', 'reaches']);
+    expect(await keys('segments')).toEqual(['ports', 'nodes', 'reaches', 'segments']);
+  });
+});
+
 describe('--case says which cases were not looked at', () => {
   it('on the terminal and in --quiet', async () => {
     put('chip.run.yaml', `${SHEET}${CASES}`);
@@ -268,6 +338,23 @@ describe('no command writes over a file it read: exit 2 with a way out', () => {
       );
     },
   );
+
+  it('a folder that differs in letter case alone is another one, where the disk tells them apart', async () => {
+    mkdirSync(join(folder, 'Out'));
+    put('Out/chip.svg', CHIP);
+    const { code } = await rillcheck(
+      'check',
+      'Out/chip.svg',
+      '-r',
+      'chip.run.yaml',
+      '-o',
+      'out',
+      '-f',
+      'svg',
+    );
+    expect(code).toBe(readdirSync(folder).includes('out') ? 0 : 2);
+    expect(readFileSync(join(folder, 'Out/chip.svg'), 'utf8')).toBe(CHIP);
+  });
 
   it('draws of a spread: over the layout, the run sheet, a link to one, before any report is written', async () => {
     symlinkSync('chip.run.yaml', join(folder, 'draws.csv'));
