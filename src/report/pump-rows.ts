@@ -29,6 +29,9 @@ export interface SettingCells {
   readonly breaks: string;
 }
 
+/** Said wherever numbers of the command pump stand that look like those of a check. */
+export const AT_FOUND_SETTINGS = 'at settings found, not given';
+
 /** Settings are shown to five digits, so that setting them by hand loses nothing that matters. */
 const DIGITS = 5;
 

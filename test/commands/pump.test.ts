@@ -187,6 +187,10 @@ describe('rillcheck pump', () => {
     expect(cases).toEqual(
       expect.arrayContaining(['Cases compared', 'in the run sheet', '1 kPa', '3 µL/min']),
     );
+    await rillcheck('pump', 'chip.svg', '-f', 'svg', '-o', 'out');
+    expect(readFileSync(join(folder, 'out/chip.pump.case-one.svg'), 'utf8')).toMatch(
+      /<title>[^<]*at settings found, not given<\/title>[\s\S]*Computed at settings found, not given\.<\/text>/,
+    );
     await rillcheck('check', 'chip.svg', '-f', 'pdf', '-o', 'out');
     const plain = await readPdf(new Uint8Array(readFileSync(join(folder, 'out/chip.pdf'))));
     expect(plain.pages.flatMap((page) => page.texts.map(({ text }) => text)).join(' ')).not.toContain(

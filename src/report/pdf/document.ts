@@ -1,3 +1,4 @@
+import { AT_FOUND_SETTINGS } from '../pump-rows.ts';
 import type { Report } from '../report.ts';
 import { casesLine, verdictLine } from '../verdict-line.ts';
 import { writeCases } from './cases.ts';
@@ -79,7 +80,7 @@ function headLine(report: Report, title: string): string {
   const { sheet } = cases[0].network.chip;
   const drawing = sheet === null ? '' : drawingText(sheet.drawing);
   const verdict = 'cases' in result ? casesLine(report) : verdictLine(result.verdict, result.counts);
-  const settings = cases.some(({ pump }) => pump !== undefined) ? 'at settings found, not given' : '';
+  const settings = cases.some(({ pump }) => pump !== undefined) ? AT_FOUND_SETTINGS : '';
   return [title, drawing, verdict, settings].filter((part) => part !== '').join('  ·  ');
 }
 
