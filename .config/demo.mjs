@@ -1,12 +1,14 @@
 // Checks every demo layout into reports/demo/ and ends 0 whatever the verdicts. The date is fixed, so that running it again
 // leaves the committed reports as they are.
 import { spawnSync } from 'node:child_process';
-import { readdirSync } from 'node:fs';
+import { readdirSync, rmSync } from 'node:fs';
 import { dirname, join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 
 const root = join(dirname(fileURLToPath(import.meta.url)), '..');
 const env = { SOURCE_DATE_EPOCH: '1767225600', ...process.env };
+// a report of an earlier name must not stay beside the new one
+rmSync(join(root, 'reports/demo'), { recursive: true, force: true });
 for (const file of readdirSync(join(root, 'layouts-demo'))
   .filter((name) => name.endsWith('.svg'))
   .sort()) {

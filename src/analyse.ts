@@ -12,7 +12,7 @@ import type { Network } from './network/types.ts';
 import type { RunSheet } from './runsheet/types.ts';
 import { drivesOf } from './solve/drives.ts';
 import { factorFlow, flowStateOf, kindsOf, prepareFlow } from './solve/flow-state.ts';
-import { centrelineFlow, jointFlowShares } from './solve/joint-share.ts';
+import { centrelineFlow, type JointShares, jointShares } from './solve/joint-share.ts';
 import { type FoundSettings, findSettings } from './solve/targets.ts';
 import type { FlowState } from './solve/types.ts';
 
@@ -22,8 +22,8 @@ export interface Analysis {
   readonly network: Network;
   readonly flow: FlowState;
   readonly findings: FindingReport;
-  /** How far joints that are not resolved could move each port's flow, as a share of it; NaN where there is none. */
-  readonly jointFlowShare: Float64Array;
+  /** How far joints that are not resolved could move flows and pressures. */
+  readonly jointShares: JointShares;
   /** The flows that counting centrelines alone would give; found when asked for. */
   readonly centrelineFlow: () => FlowState;
 }
@@ -88,14 +88,13 @@ async function judge(
   const drives = drivesOf(chip);
   const factor = factorFlow(prepareFlow(network), kindsOf(drives));
   const flow = known ?? flowStateOf(factor, drives);
-  const jointFlowShare = jointFlowShares(network, factor, drives, flow);
   await onStage('checking rules');
   return {
     chip,
     network,
     flow,
     findings: findAll({ chip, network, flow }, rules),
-    jointFlowShare,
+    jointShares: jointShares(network, factor, drives, flow),
     centrelineFlow: () => centrelineFlow(network, factor, drives),
   };
 }

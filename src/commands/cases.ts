@@ -40,7 +40,7 @@ export function alikeTo(network: Network | undefined): { readonly alike?: Networ
   return network === undefined ? {} : { alike: network };
 }
 
-/** The report of analysed cases in their order; `extra` is what a command adds to the result of each. */
+/** The report of analysed cases in their order; `extra` is what a command adds to the result of each, `sheet` the whole run sheet. */
 export function toReport(
   cases: readonly {
     readonly name: string | null;
@@ -48,6 +48,7 @@ export function toReport(
     readonly extra?: Pick<ResultInput, 'pump' | 'spread'>;
   }[],
   layoutFile: string,
+  sheet: RunSheet | null,
 ): Report {
   const settled = settleAccepts(cases.map(({ analysis }) => analysis.findings));
   const inputs = cases.map(({ name, analysis, extra }, i) => ({
@@ -61,5 +62,8 @@ export function toReport(
     },
   }));
   if (inputs.length === 1 && inputs[0].name === null) return buildReport(inputs[0].input);
-  return buildCasesReport(inputs.map(({ name, input }) => ({ name: name ?? '', input })));
+  return buildCasesReport(
+    inputs.map(({ name, input }) => ({ name: name ?? '', input })),
+    sheet?.cases.map(({ name }) => name),
+  );
 }

@@ -9,7 +9,8 @@ import type { Io } from './io.ts';
 import { type CheckOptions, formatsOf } from './options.ts';
 import { stageProgress } from './progress.ts';
 import { readLayout, readRunSheet, reportName } from './read-files.ts';
-import { writeReports } from './write-reports.ts';
+import { reportNames } from './report-names.ts';
+import { writeReports, writtenText } from './write-reports.ts';
 
 export const EXIT_READY = 0;
 export const EXIT_HOLD = 1;
@@ -40,10 +41,16 @@ export async function check(layoutPath: string, options: CheckOptions, io: Io): 
         ),
       });
     }
-    const report = toReport(cases, layoutFile.name);
-    await writeReports(report, formats, reportName(layoutPath, options.run), options, io, progress);
+    const report = toReport(cases, layoutFile.name, sheet);
+    const names = reportNames(reportName(layoutPath, options.run), null, report);
+    const inputs = [layoutFile, ...(sheetFile === null ? [] : [sheetFile])];
+    const written = await writeReports({ report, formats, names, inputs, options }, io, progress);
     progress.done();
-    if (options.json !== true) await io.out(terminalSummary(report, terminalOptions(options, io)));
+    if (options.json !== true) {
+      const terminal = terminalOptions(options, io);
+      await io.out(terminalSummary(report, terminal));
+      if (!terminal.quiet) await io.out(writtenText(written, terminal.columns));
+    }
     return report.result.verdict === 'ready' ? EXIT_READY : EXIT_HOLD;
   } finally {
     progress.done();

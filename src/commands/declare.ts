@@ -58,7 +58,7 @@ Targets stand in the run sheet, each with the port whose setting is to be found:
     - { channel: lane-1, wall_shear: 0.3 Pa, at: mean, by: feed }
 
 Examples:
-  rillcheck pump chip.svg                          settings on the terminal, reports/chip.pdf with a page for them
+  rillcheck pump chip.svg                          settings on the terminal, reports/chip.pump.pdf to sign
   rillcheck pump chip.svg --json --detail ports    exact settings as JSON
   rillcheck pump chip.svg --case culture           only this case of the run sheet
 ${exitCodes}`,
@@ -84,7 +84,7 @@ Tolerances stand in the run sheet; a value is 2 sigma, { limit: … } a hard lim
   tolerances: { depth: { lanes: 5 %, default: 3 % }, width: 2 um, temperature: 1 degC, pressure: { feed: { limit: 1 % } } }
 
 Examples:
-  rillcheck spread chip.svg                              10 000 draws; reports/chip.pdf with pages on the spread
+  rillcheck spread chip.svg                              10 000 draws; reports/chip.spread.pdf with pages on the spread
   rillcheck spread chip.svg --draws 2000 --json --detail ports
   rillcheck spread chip.svg -f csv --samples draws.csv   quantiles in reports/chip.spread.csv, every draw in draws.csv
 ${exitCodes}

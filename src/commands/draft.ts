@@ -1,12 +1,12 @@
 import { stat } from 'node:fs/promises';
-import { basename, dirname, isAbsolute, join } from 'node:path';
 import { draftRunSheet } from '../draft/draft.ts';
 import { InputError } from '../errors.ts';
 import { layOut } from '../layout/layout.ts';
 import { readSvg } from '../svg/read.ts';
 import { VERSION } from '../version.ts';
 import type { Io } from './io.ts';
-import { defaultRunSheet, readLayout } from './read-files.ts';
+import { defaultRunSheet, readLayout, resolveIn } from './read-files.ts';
+import { refuseOverwriting } from './refuse-overwriting.ts';
 import { writeFiles } from './write-files.ts';
 
 export interface DraftOptions {
@@ -17,12 +17,14 @@ export interface DraftOptions {
 
 /**
  * `rillcheck draft`: a first run sheet beside the layout.
- * Errors: InputError for a layout that can't be read, or when there is a run sheet already and no --force; WriteError.
+ * Errors: InputError for a layout that can't be read, where it would write over it, or over a run sheet without --force; WriteError.
  */
 export async function draft(layoutPath: string, options: DraftOptions, io: Io): Promise<number> {
   const layoutFile = await readLayout(layoutPath, io);
   const path = options.run ?? defaultRunSheet(layoutPath);
-  const full = isAbsolute(path) ? path : join(io.cwd, path);
+  const full = resolveIn(io, path);
+  const out = { path: full, wayOut: 'name another file with --run' };
+  if (path !== '-') await refuseOverwriting([out], [layoutFile]);
   if (path !== '-' && options.force !== true) await refuseExisting(path, full);
   const layout = layOut(readSvg(layoutFile.text, layoutFile.shown), layoutFile.shown);
   const text = draftRunSheet({ layout, file: layoutFile.name, tool: `rillcheck ${VERSION}` });
@@ -30,7 +32,7 @@ export async function draft(layoutPath: string, options: DraftOptions, io: Io): 
     await io.out(text);
     return 0;
   }
-  await writeFiles(dirname(full), [{ name: basename(full), content: [text] }], io);
+  await writeFiles([{ ...out, content: [text] }], [layoutFile], io);
   await io.out(`${path} written: fill in what it marks, then run: rillcheck check ${layoutPath}\n`);
   return 0;
 }

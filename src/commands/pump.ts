@@ -6,6 +6,7 @@ import { pumpText } from '../report/pump-text.ts';
 import type { Report } from '../report/report.ts';
 import { terminalSummary } from '../report/terminal.ts';
 import { parseRunSheet } from '../runsheet/parse.ts';
+import type { RunSheet } from '../runsheet/types.ts';
 import type { FoundSettings } from '../solve/targets.ts';
 import { readSvg } from '../svg/read.ts';
 import { alikeTo, casesOf, type SheetCase, toReport } from './cases.ts';
@@ -15,7 +16,8 @@ import type { Io } from './io.ts';
 import { type CheckOptions, formatsOf } from './options.ts';
 import { stageProgress } from './progress.ts';
 import { defaultRunSheet, readLayout, readRunSheet, reportName } from './read-files.ts';
-import { writeReports } from './write-reports.ts';
+import { reportNames } from './report-names.ts';
+import { writeReports, writtenText } from './write-reports.ts';
 
 /** `rillcheck pump`: the settings that meet the run sheet's targets, and everything that a check says at those settings. */
 export async function pump(layoutPath: string, options: CheckOptions, io: Io): Promise<number> {
@@ -27,7 +29,8 @@ export async function pump(layoutPath: string, options: CheckOptions, io: Io): P
     const sheetFile = await readRunSheet(layoutPath, options.run, io);
     if (sheetFile === null) throw noRunSheet(layoutPath);
     const layout = layOut(readSvg(layoutFile.text, layoutFile.shown), layoutFile.shown);
-    const cases = casesOf(parseRunSheet(sheetFile.text, sheetFile.shown), options.case);
+    const wholeSheet = parseRunSheet(sheetFile.text, sheetFile.shown);
+    const cases = casesOf(wholeSheet, options.case);
     refuseNoTargets(cases, sheetFile.shown);
     const analysed: PumpedCase[] = [];
     for (const { name, sheet } of cases) {
@@ -41,13 +44,16 @@ export async function pump(layoutPath: string, options: CheckOptions, io: Io): P
       const onStage: OnStage = (stage) => progress.stage(name === null ? stage : `${name}: ${stage}`);
       analysed.push({ name, ...(await analyseCase(input, onStage)) });
     }
-    const report = toPumpReport(analysed, layoutFile.name);
-    await writeReports(report, formats, reportName(layoutPath, options.run), options, io, progress);
+    const report = toPumpReport(analysed, layoutFile.name, wholeSheet);
+    const names = reportNames(reportName(layoutPath, options.run), 'pump', report);
+    const inputs = [layoutFile, sheetFile];
+    const written = await writeReports({ report, formats, names, inputs, options }, io, progress);
     progress.done();
     if (options.json !== true) {
       const terminal = terminalOptions(options, io);
       if (!terminal.quiet) await io.out(pumpText(report, terminal.columns));
       await io.out(terminalSummary(report, terminal));
+      if (!terminal.quiet) await io.out(writtenText(written, terminal.columns));
     }
     return report.result.verdict === 'ready' ? EXIT_READY : EXIT_HOLD;
   } finally {
@@ -71,7 +77,7 @@ async function analyseCase(input: AnalysisInput, onStage: OnStage): Promise<Pump
   return analysePump(input, onStage);
 }
 
-function toPumpReport(cases: readonly PumpedCase[], layoutFile: string): Report {
+function toPumpReport(cases: readonly PumpedCase[], layoutFile: string, wholeSheet: RunSheet): Report {
   const report = toReport(
     cases.map(({ name, analysis, settings }) => ({
       name,
@@ -79,6 +85,7 @@ function toPumpReport(cases: readonly PumpedCase[], layoutFile: string): Report 
       extra: settings === null ? {} : { pump: pumpPartOf(analysis.network, settings) },
     })),
     layoutFile,
+    wholeSheet,
   );
   const reported = report.cases.map((one, i) => {
     const { settings } = cases[i];

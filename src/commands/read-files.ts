@@ -10,6 +10,8 @@ export const MAX_RUN_SHEET_BYTES = 1024 * 1024;
 export interface InputFile {
   /** As given on the command line, for messages. */
   readonly shown: string;
+  /** From the root; null for standard input. */
+  readonly path: string | null;
   /** Name without folders. */
   readonly name: string;
   readonly text: string;
@@ -35,7 +37,7 @@ export async function readRunSheet(
     const text = await io.readStdin();
     if (Buffer.byteLength(text) > MAX_RUN_SHEET_BYTES)
       throw tooLarge('stdin', 'run sheet', MAX_RUN_SHEET_BYTES);
-    return { shown: 'stdin', name: 'stdin', text, sha256: sha256(text) };
+    return { shown: 'stdin', path: null, name: 'stdin', text, sha256: sha256(text) };
   }
   const path = named ?? defaultRunSheet(layoutPath);
   if (named === undefined) {
@@ -74,7 +76,13 @@ async function readInput(
     if (info.isDirectory()) throw new InputError(path, `this is a folder, not a ${what}; name a file in it`);
     if (info.size > limit) throw tooLarge(path, what, limit);
     const bytes = await readFile(full);
-    return { shown: path, name: basename(path), text: decode(bytes, path), sha256: sha256(bytes) };
+    return {
+      shown: path,
+      path: full,
+      name: basename(path),
+      text: decode(bytes, path),
+      sha256: sha256(bytes),
+    };
   } catch (error) {
     if (error instanceof InputError) throw error;
     if ((error as NodeJS.ErrnoException).code === 'ENOENT')
@@ -120,6 +128,6 @@ function sha256(content: Uint8Array | string): string {
   return createHash('sha256').update(content).digest('hex');
 }
 
-function resolveIn(io: Io, path: string): string {
+export function resolveIn(io: Io, path: string): string {
   return isAbsolute(path) ? path : join(io.cwd, path);
 }

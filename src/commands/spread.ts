@@ -1,4 +1,4 @@
-import { basename, dirname, extname, isAbsolute, join } from 'node:path';
+import { basename, dirname, extname, join } from 'node:path';
 import { performance } from 'node:perf_hooks';
 import { setImmediate } from 'node:timers/promises';
 import { type Analysis, type AnalysisInput, analyse, type OnStage } from '../analyse.ts';
@@ -22,9 +22,16 @@ import { type DrawProgress, drawProgress } from './draw-progress.ts';
 import type { Io } from './io.ts';
 import { type CheckOptions, type Format, formatsOf } from './options.ts';
 import { type Progress, stageProgress } from './progress.ts';
-import { defaultRunSheet, readLayout, readRunSheet, reportName } from './read-files.ts';
-import { type OutFile, writeFiles } from './write-files.ts';
-import { caseFileNames, writeReports } from './write-reports.ts';
+import {
+  defaultRunSheet,
+  type InputFile,
+  readLayout,
+  readRunSheet,
+  reportName,
+  resolveIn,
+} from './read-files.ts';
+import { reportNames } from './report-names.ts';
+import { type ShownFile, writeReports, writtenText } from './write-reports.ts';
 
 export interface SpreadCommandOptions extends CheckOptions {
   readonly draws: string;
@@ -51,19 +58,19 @@ export async function spread(layoutPath: string, options: SpreadCommandOptions, 
     const sheetFile = await readRunSheet(layoutPath, options.run, io);
     if (sheetFile === null) throw noRunSheet(layoutPath);
     const layout = layOut(readSvg(layoutFile.text, layoutFile.shown), layoutFile.shown);
-    const cases = casesOf(parseRunSheet(sheetFile.text, sheetFile.shown), options.case).map((one) =>
-      withTolerances(one, sheetFile.shown),
-    );
+    const wholeSheet = parseRunSheet(sheetFile.text, sheetFile.shown);
+    const cases = casesOf(wholeSheet, options.case).map((one) => withTolerances(one, sheetFile.shown));
     const input = { layout, file: layoutFile.name, layoutSha256: layoutFile.sha256 };
     const made: SpreadCase[] = [];
     for (const one of cases) made.push(await spreadCase(one, input, { draws, seed }, io, quiet, progress));
     const isStopped = made.some(({ spread: { draws: drawn, asked } }) => drawn < asked);
-    const report = toSpreadReport(made, layoutFile.name);
+    const report = toSpreadReport(made, layoutFile.name, wholeSheet);
     // what was drawn before Ctrl-C is written all the same
     await writeAll(
       report,
       formats,
       layoutPath,
+      [layoutFile, sheetFile],
       options,
       isStopped ? { ...io, isInterrupted: () => false } : io,
     );
@@ -81,13 +88,16 @@ async function writeAll(
   report: Report,
   formats: readonly Format[],
   layoutPath: string,
+  inputs: readonly InputFile[],
   options: SpreadCommandOptions,
   io: Io,
 ): Promise<void> {
   const progress = stageProgress(io, options.quiet === true || options.json === true);
+  const names = reportNames(reportName(layoutPath, options.run), 'spread', report);
+  const more = options.samples === undefined ? [] : sampleFiles(report, options.samples, io);
+  let written: readonly string[];
   try {
-    await writeReports(report, formats, reportName(layoutPath, options.run), options, io, progress);
-    if (options.samples !== undefined) await writeSamples(report, options.samples, io);
+    written = await writeReports({ report, formats, names, inputs, options, more }, io, progress);
   } finally {
     progress.done();
   }
@@ -95,6 +105,7 @@ async function writeAll(
   const terminal = terminalOptions(options, io);
   if (!terminal.quiet) await io.out(spreadText(report, terminal.columns));
   await io.out(terminalSummary(report, terminal));
+  if (!terminal.quiet) await io.out(writtenText(written, terminal.columns));
 }
 
 /** One case of the run sheet that says what may vary. */
@@ -200,7 +211,7 @@ function paceOf(io: Io, shown: DrawProgress | null): Pace {
   };
 }
 
-function toSpreadReport(cases: readonly SpreadCase[], layoutFile: string): Report {
+function toSpreadReport(cases: readonly SpreadCase[], layoutFile: string, wholeSheet: RunSheet): Report {
   const report = toReport(
     cases.map(({ name, analysis, spread: made }) => ({
       name,
@@ -208,20 +219,26 @@ function toSpreadReport(cases: readonly SpreadCase[], layoutFile: string): Repor
       extra: { spread: spreadPartOf(made) },
     })),
     layoutFile,
+    wholeSheet,
   );
   return { ...report, cases: report.cases.map((one, i) => ({ ...one, spread: cases[i].spread })) };
 }
 
 /** One file, or one for each case with its name before the ending. */
-async function writeSamples(report: Report, path: string, io: Io): Promise<void> {
-  const full = isAbsolute(path) ? path : join(io.cwd, path);
-  const extension = extname(full);
-  const name = basename(full, extension);
-  const names = caseFileNames(name, report.cases);
-  const files = report.cases.flatMap((one, i): OutFile[] =>
-    one.spread === undefined
-      ? []
-      : [{ name: `${names[i]}${extension}`, content: writeSamplesCsv(one.spread) }],
-  );
-  await writeFiles(dirname(full), files, io);
+function sampleFiles(report: Report, path: string, io: Io): readonly ShownFile[] {
+  const extension = extname(path);
+  const names = reportNames(basename(path, extension), null, report);
+  return report.cases.flatMap((one, i): ShownFile[] => {
+    if (one.spread === undefined) return [];
+    const name = names.ofCase(i, extension.slice(1)).replace(/\.$/, '');
+    const shown = join(dirname(path), name);
+    return [
+      {
+        shown,
+        path: resolveIn(io, shown),
+        content: writeSamplesCsv(one.spread),
+        wayOut: 'name another file with --samples',
+      },
+    ];
+  });
 }

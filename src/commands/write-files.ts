@@ -1,46 +1,60 @@
 import { randomBytes } from 'node:crypto';
 import { existsSync } from 'node:fs';
 import { mkdir, open, rename, rm, stat } from 'node:fs/promises';
-import { dirname, join } from 'node:path';
+import { basename, dirname, join } from 'node:path';
 import { Interrupted, type Io, WriteError } from './io.ts';
+import type { InputFile } from './read-files.ts';
+import { refuseOverwriting } from './refuse-overwriting.ts';
 
 export interface OutFile {
-  readonly name: string;
+  /** With its folder, from the root. */
+  readonly path: string;
   readonly content: Uint8Array | Iterable<string>;
+  /** What to do where it can't be written there: "choose another folder with --out". */
+  readonly wayOut: string;
 }
 
 /**
  * Writes files whole or not at all: each to a temporary file beside its place, then renamed once all are written. On any
  * failure or interruption nothing of this call is left behind.
  *
- * Errors: WriteError (folder or file can't be written, disk full), Interrupted.
+ * @param inputs what was read: nothing is written over it
+ * Errors: InputError (a file would be written over one that was read), WriteError (folder or file can't be written, disk full),
+ * Interrupted.
  */
-export async function writeFiles(folder: string, files: readonly OutFile[], io: Io): Promise<string[]> {
-  const temporary: { readonly from: string; readonly to: string }[] = [];
-  let current = folder;
+export async function writeFiles(
+  files: readonly OutFile[],
+  inputs: readonly InputFile[],
+  io: Io,
+): Promise<void> {
+  await refuseOverwriting(files, inputs);
+  const temporary: { readonly from: string; readonly file: OutFile }[] = [];
+  let current: Pick<OutFile, 'path' | 'wayOut'> | undefined;
   try {
-    await makeFolder(folder);
     for (const file of files) {
-      const to = join(folder, file.name);
-      const from = join(dirname(to), `.${file.name}.${process.pid}.${randomBytes(4).toString('hex')}.tmp`);
-      current = to;
-      temporary.push({ from, to });
+      const folder = dirname(file.path);
+      current = { ...file, path: folder };
+      await makeFolder(folder);
+      const from = join(
+        folder,
+        `.${basename(file.path)}.${process.pid}.${randomBytes(4).toString('hex')}.tmp`,
+      );
+      current = file;
+      temporary.push({ from, file });
       await writeWhole(from, file.content, io);
     }
     if (io.isInterrupted()) throw new Interrupted();
-    for (const { from, to } of temporary) {
-      current = to;
-      await rename(from, to);
+    for (const { from, file } of temporary) {
+      current = file;
+      await rename(from, file.path);
     }
   } catch (error) {
     await Promise.all(temporary.map(({ from }) => rm(from, { force: true }).catch(() => undefined)));
     if (error instanceof Interrupted || !isSystemError(error)) throw error;
-    throw new WriteError(
-      `${current}: can't be written (${reason(error)}); choose another folder with --out, or write nothing with --formats none`,
-      { cause: error },
-    );
+    throw new WriteError(`${current?.path}: can't be written (${reason(error)}); ${current?.wayOut}`, {
+      cause: error,
+    });
   }
-  return temporary.map(({ to }) => to);
 }
 
 /**

@@ -1,104 +1,121 @@
-import { isAbsolute, join } from 'node:path';
+import { basename, dirname, join } from 'node:path';
 import { writeReachesCsv, writeSegmentsCsv } from '../report/csv.ts';
 import { writeJson } from '../report/json.ts';
-import type { Report, ReportedCase } from '../report/report.ts';
+import { cleanText, wrapText } from '../report/plain-text.ts';
+import type { Report } from '../report/report.ts';
 import { writeSpreadCsv } from '../report/spread-csv.ts';
 import type { Io } from './io.ts';
 import type { CheckOptions, Format } from './options.ts';
 import type { Progress } from './progress.ts';
+import { type InputFile, resolveIn } from './read-files.ts';
+import { refuseOverwriting } from './refuse-overwriting.ts';
+import type { ReportNames } from './report-names.ts';
 import { type OutFile, writeFiles } from './write-files.ts';
 
+export interface ReportPlan {
+  readonly report: Report;
+  readonly formats: readonly Format[];
+  readonly names: ReportNames;
+  /** What was read: nothing is written over it. */
+  readonly inputs: readonly InputFile[];
+  readonly options: Pick<CheckOptions, 'out' | 'json' | 'detail' | 'colour' | 'paper'>;
+  /** Files of the command's own, written with the reports, all or none. */
+  readonly more?: readonly ShownFile[];
+}
+
+/** A file with its path as a person would write it. */
+export interface ShownFile extends OutFile {
+  readonly shown: string;
+}
+
 /**
- * Writes the reports asked for, and with --json the result on stdout. The PDF and SVG writers are loaded only when needed.
+ * Writes the reports asked for, and with --json the result on stdout; returns the paths written, as a person would write them. The PDF
+ * and SVG writers are loaded only when needed.
  *
- * Errors: WriteError when a file can't be written whole.
+ * Errors: InputError when a file would be written over one that was read; WriteError when a file can't be written whole.
  */
-export async function writeReports(
-  report: Report,
-  formats: readonly Format[],
-  name: string,
-  options: Pick<CheckOptions, 'out' | 'json' | 'detail' | 'colour' | 'paper'>,
-  io: Io,
-  progress: Progress,
-): Promise<readonly string[]> {
-  const files: OutFile[] = [];
-  for (const format of formats) {
+export async function writeReports(plan: ReportPlan, io: Io, progress: Progress): Promise<readonly string[]> {
+  const { report, formats, inputs, options, more = [] } = plan;
+  const planned = formats.flatMap((format) =>
+    filesOf(plan, format, io).map(({ name, content }) => {
+      const shown = join(options.out, name);
+      return { format, shown, path: resolveIn(io, shown), wayOut: WAY_OUT, content };
+    }),
+  );
+  // before the work of making them
+  await refuseOverwriting([...planned, ...more], inputs);
+  const files: ShownFile[] = [];
+  for (const { format, content, ...file } of planned) {
     await progress.stage(`writing ${format}`);
-    files.push(...(await toFiles(report, format, name, options, io)));
+    files.push({ ...file, content: await content() });
   }
-  const written =
-    files.length === 0
-      ? []
-      : await writeFiles(isAbsolute(options.out) ? options.out : join(io.cwd, options.out), files, io);
+  files.push(...more);
+  await writeFiles(files, inputs, io);
   if (options.json === true) {
     for (const chunk of inChunks(writeJson(report.result, options.detail))) await io.out(chunk);
   }
-  return written;
+  return files.map(({ shown }) => shown);
 }
 
-async function toFiles(
-  report: Report,
-  format: Format,
-  name: string,
-  options: Pick<CheckOptions, 'detail' | 'colour' | 'paper'>,
-  io: Io,
-): Promise<OutFile[]> {
+const WAY_OUT = 'choose another folder with --out, or write nothing with --formats none';
+
+/** "written to reports: culture.pdf, culture.case-seed.svg", a line end behind each folder; nothing when nothing was. */
+export function writtenText(paths: readonly string[], columns: number): string {
+  const names = new Map<string, string[]>();
+  for (const path of paths) names.set(dirname(path), [...(names.get(dirname(path)) ?? []), basename(path)]);
+  return [...names]
+    .flatMap(([folder, written]) =>
+      wrapText(
+        cleanText(`written to ${folder === '.' ? 'this folder' : folder}: ${written.join(', ')}`),
+        Math.max(40, Math.min(100, columns)),
+      ),
+    )
+    .map((line) => `${line}\n`)
+    .join('');
+}
+
+interface PlannedFile {
+  readonly name: string;
+  readonly content: () => OutFile['content'] | Promise<OutFile['content']>;
+}
+
+function filesOf({ report, names, options }: ReportPlan, format: Format, io: Io): PlannedFile[] {
   switch (format) {
     case 'json':
-      return [{ name: `${name}.json`, content: writeJson(report.result, options.detail) }];
-    case 'csv': {
-      const names = caseFileNames(name, report.cases);
-      return report.cases.flatMap((one, i) => [
-        { name: `${names[i]}.reaches.csv`, content: writeReachesCsv(one.part.reaches) },
-        { name: `${names[i]}.segments.csv`, content: writeSegmentsCsv(one.part.segments) },
-        ...(one.part.spread === undefined
+      return [{ name: names.whole('json'), content: () => writeJson(report.result, options.detail) }];
+    case 'csv':
+      return report.cases.flatMap(({ part: { reaches, segments, spread } }, i): PlannedFile[] => [
+        { name: names.ofCase(i, 'reaches.csv'), content: () => writeReachesCsv(reaches) },
+        { name: names.ofCase(i, 'segments.csv'), content: () => writeSegmentsCsv(segments) },
+        ...(spread === undefined
           ? []
-          : [{ name: `${names[i]}.spread.csv`, content: writeSpreadCsv(one.part.spread) }]),
+          : [{ name: names.ofCase(i, 'csv'), content: () => writeSpreadCsv(spread) }]),
       ]);
-    }
-    case 'svg': {
-      const { svgPicture } = await import('../report/svg.ts');
-      const names = caseFileNames(name, report.cases);
+    case 'svg':
       return report.cases.map((one, i) => ({
-        name: `${names[i]}.svg`,
-        content: [svgPicture(one, { quantity: options.colour })],
+        name: names.ofCase(i, 'svg'),
+        content: async () => {
+          const { svgPicture } = await import('../report/svg.ts');
+          return [svgPicture(one, { quantity: options.colour })];
+        },
       }));
-    }
-    case 'pdf': {
-      const [{ writePdf }, { readFonts }] = await Promise.all([
-        import('../report/pdf/document.ts'),
-        import('./fonts.ts'),
-      ]);
-      const content = await writePdf(report, {
-        fonts: await readFonts(),
-        paper: options.paper,
-        date: io.now,
-      });
-      return [{ name: `${name}.pdf`, content }];
-    }
+    case 'pdf':
+      return [
+        {
+          name: names.whole('pdf'),
+          content: async () => {
+            const [{ writePdf }, { readFonts }] = await Promise.all([
+              import('../report/pdf/document.ts'),
+              import('./fonts.ts'),
+            ]);
+            return writePdf(report, { fonts: await readFonts(), paper: options.paper, date: io.now });
+          },
+        },
+      ];
     default:
       return format satisfies never;
   }
 }
-
-/**
- * One picture and table a case: `culture.seed.svg`. A case name is data, so only its harmless characters name a file; names
- * that come out alike, also to a file system that does not tell upper from lower case, are numbered.
- */
-export function caseFileNames(name: string, cases: readonly Pick<ReportedCase, 'name'>[]): readonly string[] {
-  const taken = new Set<string>();
-  return cases.map(({ name: caseText }) => {
-    if (caseText === null) return name;
-    const own = `${name}.${caseText.replace(/[^\p{L}\p{N}_-]+/gu, '_').slice(0, MAX_CASE_CHARACTERS)}`;
-    let free = own;
-    for (let i = 2; taken.has(free.toLowerCase()); i++) free = `${own}-${i}`;
-    taken.add(free.toLowerCase());
-    return free;
-  });
-}
-
-/** A file name may have 255 bytes in all, and a letter up to four. */
-const MAX_CASE_CHARACTERS = 40;
 
 const CHUNK_CHARACTERS = 1 << 16;
 

@@ -1,45 +1,61 @@
+import { foundPumpLimits, givenPumpLimits, type PumpLimits } from '../chip/pump-limits.ts';
+import type { Sourced } from '../chip/types.ts';
 import type { Show } from '../runsheet/shown.ts';
-import type { PumpLimitEntry } from '../runsheet/types.ts';
 import type { FoundSettings, FoundTarget } from '../solve/targets.ts';
 import { lineAt } from '../solve/targets-limits.ts';
 import { targetValue } from '../solve/targets-wanted.ts';
 import type { FindingContext } from './context.ts';
 import { isAbove, isBelow, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
-import { listText, showFor } from './words.ts';
+import { limitText, listText, showFor } from './words.ts';
 
 /** Can the pumps do what the ports ask of them: at the conditions of the run sheet. */
 export const pumpRules: readonly Rule[] = [pumpLimitRule(null)];
 
-/** The same at found settings, where the finding also says what the nearest setting within reach does to the target. */
+/**
+ * The same at found settings, where the finding also says what the nearest setting within reach does to the target, and where what
+ * no pump usually does is a caution although the run sheet gives no limit.
+ */
 export function pumpLimitRule(settings: FoundSettings | null): Rule {
   return { names: ['pump-limit'], run: (context) => pumpLimit(context, settings) };
 }
 
 function pumpLimit(context: FindingContext, settings: FoundSettings | null): RuleOutcome {
   const { chip, flow } = context;
-  const limits = Object.entries(chip.sheet?.pumpLimits ?? {});
-  if (limits.length === 0) return notRun('pump-limit', 'no pump_limits are given');
+  const ports = chip.ports.flatMap((port, p): Limited[] => {
+    const target = settings?.targets.find(({ wanted }) => wanted.port === p) ?? null;
+    const limits =
+      target === null ? givenPumpLimits(chip, port.drawnName) : foundPumpLimits(chip, port.drawnName);
+    return limits === null ? [] : [{ port: p, limits, target }];
+  });
+  if (ports.length === 0) return notRun('pump-limit', 'no pump_limits are given');
   if (flow === null) return notRun('pump-limit', 'nothing was solved');
   const findings: Finding[] = [];
   const unknown: string[] = [];
-  for (const [drawnName, limit] of limits) {
-    const port = chip.ports.findIndex((candidate) => candidate.drawnName === drawnName);
-    const target = settings?.targets.find(({ wanted }) => wanted.port === port) ?? null;
+  for (const { port, limits, target } of ports) {
     const asked = { port, pressurePa: flow.supplyPressure[port], flowM3s: flow.portFlow[port], target };
-    const needsPressure = limit.minPressurePa !== null || limit.maxPressurePa !== null;
+    const needsPressure = limits.minPressurePa !== null || limits.maxPressurePa !== null;
     if (
       (needsPressure && Number.isNaN(asked.pressurePa)) ||
-      (limit.maxFlowM3s !== null && Number.isNaN(asked.flowM3s))
+      (limits.maxFlowM3s !== null && Number.isNaN(asked.flowM3s))
     ) {
-      unknown.push(drawnName);
+      unknown.push(chip.ports[port].name);
     }
-    const finding = findingFor(context, limit, asked);
-    if (finding !== null) findings.push(finding);
+    for (const severity of ['blocker', 'caution'] as const) {
+      const finding = findingFor(context, limits, asked, severity);
+      if (finding !== null) findings.push(finding);
+    }
   }
   if (unknown.length === 0) return { findings, notRun: [] };
   const why = `the pressure or flow of ${listText(unknown)} is not known`;
   return { findings, notRun: notRun('pump-limit', why).notRun };
+}
+
+interface Limited {
+  readonly port: number;
+  readonly limits: PumpLimits;
+  /** null for a port whose setting the run sheet gives. */
+  readonly target: FoundTarget | null;
 }
 
 /** What a pump is asked for, at the far end of the tubing. */
@@ -51,26 +67,33 @@ interface Asked {
 }
 
 interface Excess {
+  /** Of a limit that nobody gave: a caution. */
+  readonly severity: 'blocker' | 'caution';
   readonly value: number;
   readonly limit: number;
   readonly unit: 'Pa' | 'm³/s';
   readonly text: string;
 }
 
-function findingFor(context: FindingContext, limit: PumpLimitEntry, asked: Asked): Finding | null {
+function findingFor(
+  context: FindingContext,
+  limits: PumpLimits,
+  asked: Asked,
+  severity: Excess['severity'],
+): Finding | null {
   const show = showFor(context);
-  const [excess] = excesses(show, limit, asked);
+  const [excess, ...rest] = excesses(show, limits, asked).filter((one) => one.severity === severity);
   if (excess === undefined) return null;
   const { name, xMm, yMm } = context.chip.ports[asked.port];
   const { target } = asked;
   const why = target === null ? '' : ` to reach ${wantedText(show, target)}`;
-  const others = excesses(show, limit, asked)
-    .slice(1)
-    .map(({ text }) => `, and ${text}`)
-    .join('');
-  return toFinding('pump-limit', 'blocker', {
+  const others = rest.map(({ text }) => `, and ${text}`).join('');
+  return toFinding('pump-limit', severity, {
     message: `the pump at ${name} would have to ${excess.text}${others}${why}`,
-    fix: fixText(show, name, asked),
+    fix:
+      severity === 'blocker'
+        ? fixText(show, name, asked)
+        : `write under pump_limits what the pump at ${name} can do, or aim at less; ${fixText(show, name, asked)}`,
     at: { xMm, yMm },
     names: target === null ? [name] : [...new Set([name, target.wanted.name, target.wanted.entry.name])],
     measure: { value: excess.value, limit: excess.limit, unit: excess.unit },
@@ -78,33 +101,33 @@ function findingFor(context: FindingContext, limit: PumpLimitEntry, asked: Asked
 }
 
 /** Limits passed, a pressure first. */
-function excesses(show: Show, limit: PumpLimitEntry, { pressurePa, flowM3s }: Asked): Excess[] {
-  const { minPressurePa, maxPressurePa, maxFlowM3s } = limit;
+function excesses(show: Show, limits: PumpLimits, { pressurePa, flowM3s }: Asked): Excess[] {
+  const { minPressurePa, maxPressurePa, maxFlowM3s } = limits;
+  // a pressure may be unknown, and is then beyond no limit
+  const held = (): string => `hold ${show.text('pressure', pressurePa)}`;
+  const moved = Math.abs(flowM3s);
   const passed: Excess[] = [];
-  if (maxPressurePa !== null && isAbove(pressurePa, maxPressurePa)) {
-    passed.push({
-      value: pressurePa,
-      limit: maxPressurePa,
-      unit: 'Pa',
-      text: `hold ${show.text('pressure', pressurePa)}, more than the ${show.text('pressure', maxPressurePa)} that it can`,
-    });
-  }
-  if (minPressurePa !== null && isBelow(pressurePa, minPressurePa)) {
-    passed.push({
-      value: pressurePa,
-      limit: minPressurePa,
-      unit: 'Pa',
-      text: `hold ${show.text('pressure', pressurePa)}, less than the ${show.text('pressure', minPressurePa)} that it can`,
-    });
-  }
-  if (maxFlowM3s !== null && isAbove(Math.abs(flowM3s), maxFlowM3s)) {
-    passed.push({
-      value: Math.abs(flowM3s),
-      limit: maxFlowM3s,
-      unit: 'm³/s',
-      text: `${flowM3s < 0 ? 'draw' : 'give'} ${show.text('flow', Math.abs(flowM3s))}, more than the ${show.text('flow', maxFlowM3s)} that it can`,
-    });
-  }
+  const add = (
+    value: number,
+    limit: Sourced<number>,
+    unit: Excess['unit'],
+    does: string,
+    side: 'more' | 'less',
+  ): void => {
+    const limitNow = show.text(unit === 'Pa' ? 'pressure' : 'flow', limit.value);
+    const isGiven = limit.origin === 'run sheet';
+    const than = isGiven
+      ? `${side} than the ${limitNow} that it can`
+      : `${side} than the ${limitText(limitNow, limit)} that a pump can`;
+    const severity = isGiven ? 'blocker' : 'caution';
+    passed.push({ severity, value, limit: limit.value, unit, text: `${does}, ${than}` });
+  };
+  if (maxPressurePa !== null && isAbove(pressurePa, maxPressurePa.value))
+    add(pressurePa, maxPressurePa, 'Pa', held(), 'more');
+  if (minPressurePa !== null && isBelow(pressurePa, minPressurePa.value))
+    add(pressurePa, minPressurePa, 'Pa', held(), 'less');
+  if (maxFlowM3s !== null && isAbove(moved, maxFlowM3s.value))
+    add(moved, maxFlowM3s, 'm³/s', `${flowM3s < 0 ? 'draw' : 'give'} ${show.text('flow', moved)}`, 'more');
   return passed;
 }
 
@@ -112,7 +135,7 @@ function fixText(show: Show, name: string, { target }: Asked): string {
   const wider = `make the channels or tubing between ${name} and the rest wider, deeper or shorter, or take another pump`;
   if (target === null) return `ask less of it, ${wider}`;
   const { reach, response, wanted } = target;
-  if (reach === null || reach.nearest === null) {
+  if (reach.nearest === null) {
     return `no setting of ${name} keeps its limits while the other ports are as they are: ${wider}`;
   }
   const pressure = show.text('pressure', lineAt(response, response.supplyPressurePa, reach.nearest));

@@ -192,11 +192,18 @@ function classify(
     joints.sideBoundMm[side] += own;
     largest = Math.max(largest, own);
   }
-  tally.add(unknownKind(arms), 0, largest, at.x, at.y);
+  tally.add(unknownKind(arms, found), 0, largest, at.x, at.y);
 }
 
-function unknownKind(arms: readonly Arm[]): JointKind {
-  return arms.length === 2 ? 'step not computed' : 'junction not computed';
+/** @param found the computed case that it would be, had its arms more room */
+function unknownKind(arms: readonly Arm[], found: Computed | null): JointKind {
+  if (arms.length > 2) {
+    if (found !== null) return 'junction with short arms not computed';
+    if (arms.length > 3 || !isSquareTee(arms)) return 'junction not computed';
+    const isOfOneDepth = arms.every(({ channel }) => isEqualSize(channel.depthMm, arms[0].channel.depthMm));
+    return isOfOneDepth ? 'T of unequal ducts not computed' : 'T with a step in depth not computed';
+  }
+  return 'step not computed';
 }
 
 /**
@@ -268,10 +275,7 @@ function threeArms(arms: readonly Arm[]): Computed | null {
   const [mainA, mainB, side] = asTee(arms);
   if (!arms.every(({ channel }) => isEqualSize(channel.depthMm, arms[0].channel.depthMm))) return null;
   if (!isEqualSize(mainA.channel.ductWidthMm, mainB.channel.ductWidthMm)) return null;
-  if (Math.PI - angleBetween(mainA, mainB) > ANGLE_TOLERANCE_RAD) return null;
-  for (const main of [mainA, mainB]) {
-    if (Math.abs(angleBetween(main, side) - Math.PI / 2) > ANGLE_TOLERANCE_RAD) return null;
-  }
+  if (!isSquareTee(arms)) return null;
   const width = side.channel.ductWidthMm;
   const mainWidth = mainA.channel.ductWidthMm;
   const aspect = width / side.channel.depthMm;
@@ -298,6 +302,15 @@ function threeArms(arms: readonly Arm[]): Computed | null {
       toPart(side, k, error, width, mainA.channel.stripHalfWidthMm),
     ],
   };
+}
+
+/** A main straight through and a side at right angles, of whatever widths and depths. */
+function isSquareTee(arms: readonly Arm[]): boolean {
+  const [mainA, mainB, side] = asTee(arms);
+  if (Math.PI - angleBetween(mainA, mainB) > ANGLE_TOLERANCE_RAD) return false;
+  return [mainA, mainB].every(
+    (main) => Math.abs(angleBetween(main, side) - Math.PI / 2) <= ANGLE_TOLERANCE_RAD,
+  );
 }
 
 /** The two arms that are most nearly straight on first, the third last. */

@@ -27,7 +27,7 @@ export function pumpPartOf({ chip }: Network, { targets }: FoundSettings): PumpP
         pressure_pa: known(target.portPressurePa),
         supply_pressure_pa: known(response.supplyPressurePa.at),
         flow_m3_s: known(response.flowM3s.at),
-        within_limits: reach === null ? null : reach.isWithin,
+        within_limits: reach.isWithin,
         ...rangePart(target),
       };
     }),

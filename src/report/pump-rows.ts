@@ -1,8 +1,12 @@
+import { foundPumpLimits, type PumpLimits } from '../chip/pump-limits.ts';
+import type { Origin, Sourced } from '../chip/types.ts';
+import type { Finding } from '../findings/types.ts';
 import type { Network } from '../network/types.ts';
 import { formatNumber, type Show, type Shown } from '../runsheet/shown.ts';
-import type { PumpLimitEntry, Window } from '../runsheet/types.ts';
+import type { PortCondition, Window } from '../runsheet/types.ts';
 import type { FoundTarget } from '../solve/targets.ts';
 import { lineAt } from '../solve/targets-limits.ts';
+import type { ReportedCase } from './report.ts';
 
 /** Cells that the terminal and the PDF both show of one target: what is wanted, by which port, and what the found settings reach. */
 export interface TargetCells {
@@ -21,7 +25,12 @@ export interface SettingCells {
   readonly flow: string;
   readonly inChip: string;
   readonly limits: string;
+  /** Rules of blockers that the found settings break here; nothing where they break none. */
+  readonly breaks: string;
 }
+
+/** Said wherever numbers of the command pump stand that look like those of a check. */
+export const AT_FOUND_SETTINGS = 'at settings found, not given';
 
 /** Settings are shown to five digits, so that setting them by hand loses nothing that matters. */
 const DIGITS = 5;
@@ -38,7 +47,10 @@ export function targetCells({ wanted, reached }: FoundTarget, show: Show): Targe
   };
 }
 
-export function settingCells(network: Network, target: FoundTarget, show: Show): SettingCells {
+export function settingCells(
+  { network, findings, show }: Pick<ReportedCase, 'network' | 'findings' | 'show'>,
+  target: FoundTarget,
+): SettingCells {
   const { wanted, response, portPressurePa } = target;
   const { chip } = network;
   const { name } = chip.ports[wanted.port];
@@ -47,8 +59,75 @@ export function settingCells(network: Network, target: FoundTarget, show: Show):
     pressure: fine(show, 'pressure', response.supplyPressurePa.at),
     flow: fine(show, 'flow', response.flowM3s.at),
     inChip: fine(show, 'pressure', portPressurePa),
-    limits: limitsText(target, chip.sheet?.pumpLimits[wanted.entry.by], show),
+    limits: limitsText(target, foundPumpLimits(chip, wanted.entry.by), show),
+    breaks: brokenBy(target, name, findings.findings).join(', '),
   };
+}
+
+/** Rules that what the ports are set to decides. */
+const DECIDED_BY_SETTINGS: ReadonlySet<string> = new Set([
+  'backflow',
+  'dead-port',
+  'flow-window',
+  'not-laminar',
+  'over-pressure',
+  'pump-limit',
+  'residence-window',
+  'shear-window',
+  'under-pressure',
+  'uneven-flow',
+]);
+
+/** Blockers at the found settings that name the port, or what its target is on. */
+function brokenBy({ wanted }: FoundTarget, port: string, findings: readonly Finding[]): readonly string[] {
+  const names = new Set([port, wanted.name, wanted.entry.name]);
+  const rules = findings
+    .filter(
+      ({ rule, severity, accepted, names: concerned }) =>
+        severity === 'blocker' &&
+        accepted === null &&
+        DECIDED_BY_SETTINGS.has(rule) &&
+        concerned.some((name) => names.has(name)),
+    )
+    .map(({ rule }) => rule);
+  return [...new Set(rules)];
+}
+
+/** A port's condition in the run sheet beside the setting found for it. */
+export interface FoundCells {
+  readonly port: string;
+  readonly given: string;
+  readonly found: string;
+}
+
+export function foundCells(
+  { network, show }: Pick<ReportedCase, 'network' | 'show'>,
+  target: FoundTarget,
+): FoundCells {
+  const { wanted, response, given } = target;
+  return {
+    port: network.chip.ports[wanted.port].name,
+    given: conditionText(given, show),
+    found: `${fine(show, 'pressure', response.supplyPressurePa.at)}, or ${fine(show, 'flow', response.flowM3s.at)}`,
+  };
+}
+
+function conditionText(condition: PortCondition, show: Show): string {
+  switch (condition.kind) {
+    case 'pressure':
+      return fine(show, 'pressure', condition.pressurePa);
+    case 'flow':
+      return fine(show, 'flow', condition.flowM3s);
+    case 'head':
+      return `head ${fine(show, 'length', condition.headM)}`;
+    case 'unset':
+      return 'not set';
+    case 'open':
+    case 'sealed':
+      return condition.kind;
+    default:
+      return condition satisfies never;
+  }
 }
 
 /** For a window: between which settings of its port alone it is kept; null for a target of one value. */
@@ -78,14 +157,18 @@ function windowText(show: Show, shown: Shown, { min, max }: Window): string {
   return `${formatNumber(min / si, DIGITS)} to ${formatNumber(max / si, DIGITS)} ${text}`;
 }
 
-function limitsText({ reach }: FoundTarget, limits: PumpLimitEntry | undefined, show: Show): string {
-  if (reach === null || limits === undefined) return 'no limits given';
+function limitsText({ reach }: FoundTarget, limits: PumpLimits, show: Show): string {
+  const isGiven = Object.values(limits).some((limit) => limit?.origin === 'run sheet');
   const { minPressurePa, maxPressurePa, maxFlowM3s } = limits;
+  // usual limits are told where there are no others, or where it is they that are passed
+  const told = isGiven && reach.isWithin ? (origin: Origin) => origin === 'run sheet' : () => true;
+  const value = (limit: Sourced<number> | null): number | null =>
+    limit !== null && told(limit.origin) ? limit.value : null;
+  const [min, max, flow] = [value(minPressurePa), value(maxPressurePa), value(maxFlowM3s)];
   const parts = [
-    minPressurePa === null && maxPressurePa === null
-      ? []
-      : [windowText(show, 'pressure', { min: minPressurePa, max: maxPressurePa })],
-    maxFlowM3s === null ? [] : [windowText(show, 'flow', { min: null, max: maxFlowM3s })],
-  ].flat();
-  return `${reach.isWithin ? 'within:' : 'OUT OF REACH:'} ${parts.join(', ')}`;
+    ...(min === null && max === null ? [] : [windowText(show, 'pressure', { min, max })]),
+    ...(flow === null ? [] : [windowText(show, 'flow', { min: null, max: flow })]),
+  ];
+  const usual = isGiven ? '' : ' what is usual';
+  return `${reach.isWithin ? `within${usual}:` : isGiven ? 'OUT OF REACH:' : 'BEYOND WHAT IS USUAL:'} ${parts.join(', ')}`;
 }

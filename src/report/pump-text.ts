@@ -12,8 +12,13 @@ export function pumpText(report: Report, columns: number): string {
     .join('');
 }
 
-function caseLines({ name, network, pump, show }: ReportedCase, width: number): readonly string[] {
+function caseLines(one: ReportedCase, width: number): readonly string[] {
+  const { name, network, pump, show } = one;
   const targets = pump?.targets ?? [];
+  const broken = targets.flatMap((target) => {
+    const { port, breaks } = settingCells(one, target);
+    return breaks === '' ? [] : [`the setting of ${port} breaks ${breaks}: see the blockers`];
+  });
   const ranges = targets.flatMap((target) => rangeText(network, target, show) ?? []);
   return [
     name === null ? 'pump settings' : `pump settings, case ${cleanText(name)}`,
@@ -38,14 +43,16 @@ function caseLines({ name, network, pump, show }: ReportedCase, width: number): 
         { head: 'pressure to hold', align: 'right' },
         { head: 'or flow to give', align: 'right' },
         { head: 'in the chip', align: 'right' },
+        { head: 'breaks', align: 'left' },
         { head: 'pump limits', align: 'left' },
       ],
       targets.map((target) => {
-        const { port, pressure, flow, inChip, limits } = settingCells(network, target, show);
-        return [cleanText(port), pressure, flow, inChip, limits];
+        const { port, pressure, flow, inChip, breaks, limits } = settingCells(one, target);
+        return [cleanText(port), pressure, flow, inChip, breaks, limits];
       }),
       width,
     ),
+    ...broken.flatMap((text) => wrapText(cleanText(text), width)),
     ...ranges.flatMap((text) => wrapText(cleanText(text), width)),
   ];
 }

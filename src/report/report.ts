@@ -27,20 +27,36 @@ export interface ReportedCase {
 export interface Report {
   readonly result: Result;
   readonly cases: readonly ReportedCase[];
+  /** Names of all cases of the run sheet, in its order, also of those that were not looked at; none for a sheet without cases. */
+  readonly sheetCases: readonly string[];
+}
+
+/** Cases of the run sheet that were left out (--case): nobody has said anything of them. */
+export function casesLeftOut({ cases, sheetCases }: Pick<Report, 'cases' | 'sheetCases'>): readonly string[] {
+  const seen = new Set(cases.map(({ name }) => name));
+  return sheetCases.filter((name) => !seen.has(name));
 }
 
 /** Report of a layout without cases. */
 export function buildReport(input: ResultInput): Report {
   const result = buildResult(input);
-  return { result, cases: [reportedCase(null, input, result)] };
+  return { result, cases: [reportedCase(null, input, result)], sheetCases: [] };
 }
 
-/** Report of a layout under several cases, in the order given. */
+/**
+ * Report of a layout under several cases, in the order given.
+ * @param sheetCases names of all cases of the run sheet, where not all are reported
+ */
 export function buildCasesReport(
   cases: readonly { readonly name: string; readonly input: ResultInput }[],
+  sheetCases: readonly string[] = cases.map(({ name }) => name),
 ): Report {
   const result = buildCasesResult(cases);
-  return { result, cases: cases.map(({ name, input }, i) => reportedCase(name, input, result.cases[i])) };
+  return {
+    result,
+    cases: cases.map(({ name, input }, i) => reportedCase(name, input, result.cases[i])),
+    sheetCases,
+  };
 }
 
 function reportedCase(name: string | null, input: ResultInput, part: CasePart): ReportedCase {

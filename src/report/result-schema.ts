@@ -67,6 +67,7 @@ export const portSchema = v.strictObject({
   tubing_volume_m3: maybe('Volume of all tubing pieces; null without tubing'),
   tubing_time_s: maybe('Tubing volume over flow; null without tubing or flow'),
   joint_flow_share: maybe('How far joints that were not resolved could move the flow, as a share of it'),
+  joint_pressure_share: maybe('How far they could move the pressure in the chip, as a share of it'),
 });
 
 export const nodeSchema = v.strictObject({
@@ -106,6 +107,7 @@ export const reachSchema = v.strictObject({
   residence_time_s: maybe('Volume over flow'),
   fastest_time_s: maybe('Length over peak velocity'),
   volume_m3: maybe('Width × depth × length'),
+  joint_flow_share: maybe('How far joints that were not resolved could move the flow, as a share of it'),
 });
 
 export const segmentSchema = v.strictObject({

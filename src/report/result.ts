@@ -2,6 +2,7 @@ import type { Chip, Port } from '../chip/types.ts';
 import type { FindingReport } from '../findings/types.ts';
 import { type Network, NODE_KINDS } from '../network/types.ts';
 import { tubeVolume } from '../physics/tube.ts';
+import type { JointShares } from '../solve/joint-share.ts';
 import type { FlowState } from '../solve/types.ts';
 import type {
   BalanceRow,
@@ -62,8 +63,8 @@ export interface ResultInput {
   readonly findings: FindingReport;
   /** File name of the layout as printed. */
   readonly layoutFile: string;
-  /** How far unresolved joints could move each port's flow, as a share of it; in the order of chip.ports. */
-  readonly jointFlowShare?: Float64Array;
+  /** How far unresolved joints could move flows and pressures. */
+  readonly jointShares?: JointShares;
   /** The flows that counting centrelines alone would give, for the report's list of joints; found when asked for. */
   readonly centrelineFlow?: () => FlowState;
   readonly pump?: PumpPart;
@@ -130,9 +131,11 @@ function casePartOf(input: ResultInput): CasePart {
       accepted: findings.counts.accepted,
       rules_not_run: findings.counts.rulesNotRun,
     },
-    ports: chip.ports.map((port, i) => portRow(port, i, flow, input.jointFlowShare)),
+    ports: chip.ports.map((port, i) => portRow(port, i, flow, input.jointShares)),
     nodes: rows(network.nodeCount, (node) => nodeRow(network, flow, node)),
-    reaches: rows(network.reachCount, (reach) => reachRow(network, flow, reach, sectionOf)),
+    reaches: rows(network.reachCount, (reach) =>
+      reachRow(network, flow, reach, sectionOf, input.jointShares),
+    ),
     segments: rows(network.segmentCount, (segment) => segmentRow(network, flow, segment, sectionOf)),
     findings: findings.findings.map(findingRow),
     not_run: findings.notRun.map(({ rule, why }) => ({ rule, why })),
@@ -150,12 +153,7 @@ function celsius(kelvin: number): number {
   return Number((kelvin - 273.15).toFixed(9));
 }
 
-function portRow(
-  port: Port,
-  index: number,
-  flow: FlowState,
-  jointFlowShare: Float64Array | undefined,
-): PortRow {
+function portRow(port: Port, index: number, flow: FlowState, jointShares: JointShares | undefined): PortRow {
   const flowM3s = flow.portFlow[index];
   const volumeM3 =
     port.tubing.length === 0
@@ -172,7 +170,8 @@ function portRow(
     flow_m3_s: known(flowM3s),
     tubing_volume_m3: volumeM3,
     tubing_time_s: volumeM3 === null ? null : known(volumeM3 / Math.abs(flowM3s)),
-    joint_flow_share: jointFlowShare === undefined ? null : known(jointFlowShare[index]),
+    joint_flow_share: jointShares === undefined ? null : known(jointShares.portFlow[index]),
+    joint_pressure_share: jointShares === undefined ? null : known(jointShares.portPressure[index]),
   };
 }
 
@@ -188,7 +187,13 @@ function nodeRow(network: Network, flow: FlowState, node: number): NodeRow {
 
 type SectionOf = ReturnType<typeof sectionCache>;
 
-function reachRow(network: Network, flow: FlowState, reach: number, sectionOf: SectionOf): ReachRow {
+function reachRow(
+  network: Network,
+  flow: FlowState,
+  reach: number,
+  sectionOf: SectionOf,
+  jointShares: JointShares | undefined,
+): ReachRow {
   const { chip } = network;
   const channel = chip.channels[network.reachChannel[reach]];
   const section = sectionOf(channel.profile, channel.ductWidthMm / 1000, channel.depthMm / 1000);
@@ -236,6 +241,7 @@ function reachRow(network: Network, flow: FlowState, reach: number, sectionOf: S
     residence_time_s: known(volumeM3 / Math.abs(flowM3s)),
     fastest_time_s: known(roomM / state.peakVelocity),
     volume_m3: known(volumeM3),
+    joint_flow_share: jointShares === undefined ? null : known(jointShares.reachFlow[reach]),
   };
 }
 

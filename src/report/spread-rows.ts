@@ -1,6 +1,6 @@
 import { formatNumber, formatShare, type Show, type Shown, type Unit } from '../runsheet/shown.ts';
 import type { Tolerance } from '../runsheet/types.ts';
-import type { OutputQuantity } from '../spread/outputs.ts';
+import { isKept, type OutputQuantity } from '../spread/outputs.ts';
 import type { Spread, SpreadOutput } from '../spread/types.ts';
 import type { Cause } from '../spread/variables.ts';
 import { keptShare } from './spread-part.ts';
@@ -187,6 +187,14 @@ export function remarks(spread: Spread): readonly string[] {
   const bent = outputs.filter(({ isLinear }) => isLinear === false);
   if (bent.length > 0) {
     texts.push(`the response is not linear there, go by the sample: ${listOf(bent.map(outputText))}`);
+  }
+  const missed = outputs.filter(
+    (output) => output.isTarget && output.hasWindow && !isKept(output, output.nominal),
+  );
+  if (missed.length > 0) {
+    texts.push(
+      `at the settings of the run sheet the target is missed by the ${listOf(missed.map(outputText))}; the command pump finds settings that meet it`,
+    );
   }
   for (const text of idle) texts.push(`moves nothing: ${text}`);
   if (unknownLimits.length > 0) texts.push(`not judged: ${listOf(unknownLimits)}`);

@@ -10,6 +10,7 @@ import {
 } from './map.ts';
 import { chipGeometry } from './map-geometry.ts';
 import { cleanText, displayWidth } from './plain-text.ts';
+import { AT_FOUND_SETTINGS } from './pump-rows.ts';
 import type { MapQuantity } from './reach-values.ts';
 import type { ReportedCase } from './report.ts';
 import { verdictLine } from './verdict-line.ts';
@@ -45,7 +46,9 @@ export function svgPicture(one: ReportedCase, options: SvgOptions): string {
     file,
     one.name === null ? '' : `, case ${cleanText(one.name)}`,
     `: ${QUANTITY_TITLES[options.quantity]}`,
+    one.pump === undefined ? '' : `, ${AT_FOUND_SETTINGS}`,
   ].join('');
+  const foundText = one.pump === undefined ? '' : ` Computed ${AT_FOUND_SETTINGS}.`;
   const height = drawing.heightMm + 2 * LABEL_MM;
   return [
     '<?xml version="1.0" encoding="UTF-8"?>\n',
@@ -61,7 +64,7 @@ export function svgPicture(one: ReportedCase, options: SvgOptions): string {
     ...holes(drawing, one),
     ...labels(drawing, one),
     ...foot(drawing),
-    `<text x="${mm(LABEL_MM)}" y="${mm(height - 0.8 * LABEL_MM)}">${escapeXml(`${file}. ${drawing.caption}`)}</text>\n`,
+    `<text x="${mm(LABEL_MM)}" y="${mm(height - 0.8 * LABEL_MM)}">${escapeXml(`${file}. ${drawing.caption}${foundText}`)}</text>\n`,
     '</svg>\n',
   ].join('');
 }

@@ -4,7 +4,7 @@ import { cleanText, clipText, displayWidth, padText, wrapText } from './plain-te
 import { hasWindow, outsideWindows, reachesThatMatter, windowTexts } from './reach-values.ts';
 import type { Report, ReportedCase } from './report.ts';
 import type { FindingRow } from './result-schema.ts';
-import { plural, verdictCounts } from './verdict-line.ts';
+import { casesLine, verdictCounts } from './verdict-line.ts';
 
 export interface TerminalOptions {
   readonly colour: boolean;
@@ -29,8 +29,7 @@ export function terminalSummary(report: Report, options: TerminalOptions): strin
     const verdict = verdictLines(one, title, width, paint);
     return options.quiet ? verdict : [...verdict, ...caseLines(one, width, paint)];
   });
-  if ('cases' in report.result)
-    lines.push(`all ${plural(report.cases.length, 'case')}: ${report.result.verdict}`);
+  if ('cases' in report.result) lines.push(...wrapText(casesLine(report), width));
   return `${lines.join('\n')}\n`;
 }
 

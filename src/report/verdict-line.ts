@@ -1,3 +1,6 @@
+import { listText } from '../findings/words.ts';
+import { cleanText } from './plain-text.ts';
+import { casesLeftOut, type Report } from './report.ts';
 import type { CountsRow } from './result-schema.ts';
 
 /** The verdict, never without its counts: "ready: 0 blockers, 3 cautions, 2 accepted, 4 rules not run". */
@@ -14,6 +17,14 @@ export function verdictCounts(
     `${counts.accepted} accepted`,
     `${plural(counts.rules_not_run, 'rule')} not run`,
   ].join(', ');
+}
+
+/** "all 3 cases: ready", or "1 of 3 cases: ready; not looked at: seed and rest". */
+export function casesLine(report: Report): string {
+  const { result, cases, sheetCases } = report;
+  const leftOut = casesLeftOut(report);
+  if (leftOut.length === 0) return `all ${plural(cases.length, 'case')}: ${result.verdict}`;
+  return `${cases.length} of ${plural(sheetCases.length, 'case')}: ${result.verdict}; not looked at: ${cleanText(listText(leftOut, 8))}`;
 }
 
 export function plural(count: number, noun: string): string {

@@ -1,6 +1,9 @@
 import type { PumpLimitEntry } from '../runsheet/types.ts';
 import type { Interval } from './targets-wanted.ts';
 
+/** What a pump can do; null where nothing is said. */
+export type PumpNumbers = Omit<PumpLimitEntry, 'line'>;
+
 /**
  * What one setting does while the other settings stay as found: each is `at` + `slope` · (setting − found setting).
  * The setting is a pressure at the far end of the tubing (Pa) or a flow into the chip (m³/s).
@@ -29,7 +32,7 @@ export interface PumpReach {
 const SLACK = 1e-9;
 
 /** Whether a pump can do a setting: both the pressure at the far end of the tubing and the flow lie within what it can hold and give. */
-export function pumpReach(response: Response, limits: PumpLimitEntry): PumpReach {
+export function pumpReach(response: Response, limits: PumpNumbers): PumpReach {
   const interval = settingsWithin(response, limits);
   const { setting } = response;
   if (interval === null) return { isWithin: false, interval, nearest: null };
@@ -40,7 +43,7 @@ export function pumpReach(response: Response, limits: PumpLimitEntry): PumpReach
 }
 
 /** Settings at which the pump's pressure and flow keep its limits. */
-export function settingsWithin(response: Response, limits: PumpLimitEntry): Interval | null {
+export function settingsWithin(response: Response, limits: PumpNumbers): Interval | null {
   const { minPressurePa, maxPressurePa, maxFlowM3s } = limits;
   const byPressure = settingsFor(response, response.supplyPressurePa, {
     low: minPressurePa ?? -Infinity,

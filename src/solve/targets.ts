@@ -5,6 +5,7 @@
  * Wall shear, velocity and residence time say how much flows and not which way. The way is that in which the reach flows under the run sheet as written; where
  * nothing flows there, that in which `by` drives it by pushing into the chip, or by drawing out of it where it says `expect: out`.
  */
+import { foundPumpLimits, pumpLimitValues } from '../chip/pump-limits.ts';
 import { InputError } from '../errors.ts';
 import type { Network } from '../network/types.ts';
 import { quote } from '../runsheet/quote.ts';
@@ -51,8 +52,10 @@ export interface FoundTarget {
   readonly portPressurePa: number;
   /** For a window: the settings of this port that keep it, the others as found. Infinite where open. */
   readonly range: Interval | null;
-  /** null when the run sheet gives no pump_limits for the port. */
-  readonly reach: PumpReach | null;
+  /** By the run sheet's pump_limits for the port, and by what is usual where it gives none. */
+  readonly reach: PumpReach;
+  /** What the run sheet says of the port, in whose place the setting stands. */
+  readonly given: PortCondition;
 }
 
 export interface FoundSettings {
@@ -87,7 +90,7 @@ export function findSettings(network: Network): FoundSettings {
   const aims = wanted.map((target, i) => betterAim(system, sheet, target, i, ways[i], solution, first[i]));
   if (aims.some((aim, i) => aim !== first[i])) solution = settle(system, wanted, aims);
   return {
-    targets: wanted.map((target, i) => foundTarget(system, sheet, target, i, ways[i], solution)),
+    targets: wanted.map((target, i) => foundTarget(system, target, i, ways[i], solution)),
     conditions: conditionsOf(network, wanted, solution.settings),
     flow: solution.state,
   };
@@ -411,21 +414,21 @@ function rangeOf({ entry: { value }, measure }: Wanted, way: 1 | -1, response: R
 
 function foundTarget(
   system: System,
-  sheet: RunSheet,
   target: Wanted,
   i: number,
   way: 1 | -1,
   solution: Solution,
 ): FoundTarget {
   const response = responseOf(system, target, i, solution);
-  const limits = sheet.pumpLimits[target.entry.by];
+  const { chip } = system.network;
   return {
     wanted: target,
     reached: targetValue(target.measure, response.observed.at),
     response,
     portPressurePa: solution.state.portPressure[target.port],
     range: rangeOf(target, way, response),
-    reach: limits === undefined ? null : pumpReach(response, limits),
+    reach: pumpReach(response, pumpLimitValues(foundPumpLimits(chip, target.entry.by))),
+    given: chip.ports[target.port].condition,
   };
 }
 

@@ -3,7 +3,8 @@ import { reynoldsNumber } from '../physics/reynolds.ts';
 import { acceptedLimits } from './accepted.ts';
 import { evennessOf } from './evenness.ts';
 import type { ChipState, SpreadModel } from './model.ts';
-import { flowingIn, isKept, type Output } from './outputs.ts';
+import { flowingIn, isKept, type Output, outputValue, timeOutputs } from './outputs.ts';
+import { channelReaches } from './passages.ts';
 
 /**
  * Whether a state keeps every window and limit that flow decides: the outputs' own, and the Reynolds number of every reach.
@@ -34,6 +35,7 @@ export function makeJudge(model: SpreadModel, outputs: readonly Output[], nomina
   const failures = new Int32Array(outputs.length);
   const isLaminar = laminarityOf(model);
   const evenness = evennessOf(model);
+  const regrouped = regrouping(model, outputs, judged);
   let turbulent = 0;
   return {
     limited: judged,
@@ -43,10 +45,9 @@ export function makeJudge(model: SpreadModel, outputs: readonly Output[], nomina
     turbulent: () => turbulent,
     isGood: (values, state) => {
       let good = true;
+      const anew = regrouped(state);
       for (const i of judged) {
-        // a time through a reach without flow does not exist because it has no end
-        const value = Number.isNaN(values[i]) ? Number.POSITIVE_INFINITY : values[i];
-        if (isKept(outputs[i], value)) continue;
+        if (anew?.get(i) ?? keeps(outputs[i], values[i])) continue;
         failures[i]++;
         good = false;
       }
@@ -56,6 +57,59 @@ export function makeJudge(model: SpreadModel, outputs: readonly Output[], nomina
       return false;
     },
   };
+}
+
+/** A time through a reach without flow does not exist because it has no end. */
+function keeps(output: Output, value: number): boolean {
+  return isKept(output, Number.isNaN(value) ? Number.POSITIVE_INFINITY : value);
+}
+
+/**
+ * Where a reach flows another way than nominally, fluid passes other reaches one after the other, and the residence windows of the
+ * channel are asked of those. Gives what then is kept of the outputs they stand in for; null while every passage is the nominal one.
+ */
+function regrouping(
+  model: SpreadModel,
+  outputs: readonly Output[],
+  judged: readonly number[],
+): (state: ChipState) => ReadonlyMap<number, boolean> | null {
+  const { network, nominal } = model;
+  const ofChannel = new Map<number, number[]>();
+  for (const i of judged) {
+    const { subject, hasWindow, isTarget } = outputs[i];
+    if (subject.kind !== 'time' || !hasWindow || isTarget) continue;
+    const channel = network.reachChannel[subject.reaches[0]];
+    ofChannel.set(channel, [...(ofChannel.get(channel) ?? []), i]);
+  }
+  const watched = [...ofChannel].flatMap(([channel, members]) => {
+    const reaches = channelReaches(network, channel);
+    return reaches.length > 1 && reaches.every((reach) => !Number.isNaN(nominal.reachFlow[reach]))
+      ? [{ channel, members, reaches }]
+      : [];
+  });
+  return (state) => {
+    let kept: Map<number, boolean> | null = null;
+    const { flow } = state.flow;
+    for (const { channel, members, reaches } of watched) {
+      if (reaches.every((reach) => flow[reach] * nominal.reachFlow[reach] > 0)) continue;
+      kept ??= new Map();
+      const failed = timeOutputs(network, channel, flow).filter(
+        (output) => !keeps(output, outputValue(output, model, state)),
+      );
+      for (const i of members)
+        kept.set(i, !failed.some(({ subject }) => isOfSameTime(subject, outputs[i].subject)));
+    }
+    return kept;
+  };
+}
+
+function isOfSameTime(a: Output['subject'], b: Output['subject']): boolean {
+  return (
+    a.kind === 'time' &&
+    b.kind === 'time' &&
+    a.at === b.at &&
+    a.reaches.some((reach) => b.reaches.includes(reach))
+  );
 }
 
 /** Whether a time does not exist because the flow is known to be nought. */

@@ -22,7 +22,13 @@ export type Subject =
   /** In the chip at the port, or at the far end of its tubing. */
   | { readonly kind: 'port pressure'; readonly port: number; readonly at: 'chip' | 'supply' }
   | { readonly kind: 'node pressure'; readonly node: number }
-  | { readonly kind: 'reach flow'; readonly reach: number; readonly sign: 1 | -1 }
+  /** A window on a channel asks for its size; a target asks with the sign, from → to. */
+  | {
+      readonly kind: 'reach flow';
+      readonly reach: number;
+      readonly sign: 1 | -1;
+      readonly asked: 'size' | 'signed';
+    }
   | { readonly kind: 'shear'; readonly reach: number; readonly wall: Wall; readonly at: 'mean' | 'peak' }
   | { readonly kind: 'velocity'; readonly reach: number }
   /** Through reaches that fluid passes one after the other: volume over flow, or on the axis. */
@@ -54,10 +60,10 @@ export interface Output {
   readonly name: string;
   readonly quantity: OutputQuantity;
   readonly unit: 'm³/s' | 'Pa' | 'm/s' | 's' | '';
-  /** What a window or a limit asks of this number. */
+  /** What windows and limits ask of this number, all of them together. */
   readonly min: number | null;
   readonly max: number | null;
-  /** Whether the limits are those of a channel's window. */
+  /** Whether a window of a channel or of a target is among them. */
   readonly hasWindow: boolean;
   readonly isTarget: boolean;
   readonly subject: Subject;
@@ -72,8 +78,7 @@ export function listOutputs(network: Network, nominal: FlowState): readonly Outp
   const add = (output: Output): void => {
     const key = `${output.on} ${output.quantity} ${JSON.stringify(output.subject)}`;
     const known = outputs.get(key);
-    if (known === undefined) outputs.set(key, output);
-    else if (output.isTarget) outputs.set(key, { ...known, isTarget: true });
+    outputs.set(key, known === undefined ? output : bothAsked(known, output));
   };
   for (const output of portOutputs(network)) add(output);
   for (const output of targetOutputs(network, nominal)) add(output);
@@ -82,6 +87,17 @@ export function listOutputs(network: Network, nominal: FlowState): readonly Outp
       for (const output of windowOutputs(network, nominal, channel, settings)) add(output);
   });
   return [...outputs.values()];
+}
+
+/** One number of which two things are asked: it must keep both. */
+function bothAsked(a: Output, b: Output): Output {
+  return {
+    ...a,
+    min: tighter(a.min, b.min, Math.max),
+    max: tighter(a.max, b.max, Math.min),
+    hasWindow: a.hasWindow || b.hasWindow,
+    isTarget: a.isTarget || b.isTarget,
+  };
 }
 
 /** Nodes of the network whose pressure is an output. */
@@ -275,22 +291,30 @@ function windowOutputs(
     for (const wall of walls === 'all' ? (['floor', 'side'] as const) : (['floor'] as const))
       outputs.push(...shearOutputs(network, reach, wall, wallShear, names));
   }
-  for (const passage of passagesOf(network, reaches, nominal.reachFlow)) {
-    const names = [...passage.map(network.reachName), channelName];
-    const limits = acceptedLimits(
+  outputs.push(...timeOutputs(network, channel, nominal.reachFlow));
+  return outputs;
+}
+
+/** Times through the reaches that fluid passes one after the other under these flows, with what the channel's window asks of them. */
+export function timeOutputs(network: Network, channel: number, reachFlow: Float64Array): Output[] {
+  const { chip } = network;
+  const { name, settings } = chip.channels[channel];
+  const window = settings?.residenceTime ?? null;
+  const reaches = [...channelReaches(network, channel)];
+  return passagesOf(network, reaches, reachFlow).flatMap((passage): Output[] => {
+    const names = [...passage.map(network.reachName), name];
+    const { min, max } = acceptedLimits(
       chip,
       'residence-window',
       names,
       's',
-      residenceTime?.min ?? null,
-      residenceTime?.max ?? null,
+      window?.min ?? null,
+      window?.max ?? null,
     );
-    const hasWindow = residenceTime !== null;
-    outputs.push({ ...timeOutput(network, passage, 'mean'), max: limits.max, hasWindow });
-    if (limits.min !== null)
-      outputs.push({ ...timeOutput(network, passage, 'fastest'), min: limits.min, hasWindow });
-  }
-  return outputs;
+    const hasWindow = window !== null;
+    const mean = { ...timeOutput(network, passage, 'mean'), max, hasWindow };
+    return min === null ? [mean] : [mean, { ...timeOutput(network, passage, 'fastest'), min, hasWindow }];
+  });
 }
 
 /** Without `over` the mean must reach the least and the peak must not pass the most; with it the share between them counts. */
@@ -340,7 +364,7 @@ function reachFlowOutput(network: Network, nominal: FlowState, reach: number): O
     name: network.reachName(reach),
     quantity: 'flow',
     unit: 'm³/s',
-    subject: { kind: 'reach flow', reach, sign },
+    subject: { kind: 'reach flow', reach, sign, asked: 'size' },
   };
 }
 
@@ -382,7 +406,7 @@ function targetOutputs(network: Network, nominal: FlowState): Output[] {
             subject.port === port &&
             quantity === (target.quantity === 'flow' ? 'flow' : 'pressure'),
         );
-        return wanted.map((output) => ({ ...output, isTarget: true }));
+        return wanted.map((output) => ({ ...output, ...askedByTarget(target) }));
       }
       case 'node': {
         const node = nodeOf(network, target);
@@ -393,7 +417,7 @@ function targetOutputs(network: Network, nominal: FlowState): Output[] {
             name: network.nodeName(node),
             quantity: 'pressure',
             unit: 'Pa',
-            isTarget: true,
+            ...askedByTarget(target),
             subject: { kind: 'node pressure', node },
           },
         ];
@@ -401,7 +425,7 @@ function targetOutputs(network: Network, nominal: FlowState): Output[] {
       case 'channel':
         return targetReaches(network, target).map((reach) => ({
           ...reachTarget(network, nominal, reach, target),
-          isTarget: true,
+          ...askedByTarget(target),
         }));
       default:
         return target.on satisfies never;
@@ -409,10 +433,19 @@ function targetOutputs(network: Network, nominal: FlowState): Output[] {
   });
 }
 
+/** A window is kept or not in every draw; one value is only aimed at. */
+function askedByTarget({ value }: TargetEntry): Pick<Output, 'min' | 'max' | 'hasWindow' | 'isTarget'> {
+  if (typeof value === 'number') return { min: null, max: null, hasWindow: false, isTarget: true };
+  return { min: value.min, max: value.max, hasWindow: true, isTarget: true };
+}
+
 function reachTarget(network: Network, nominal: FlowState, reach: number, target: TargetEntry): Output {
   switch (target.quantity) {
-    case 'flow':
-      return reachFlowOutput(network, nominal, reach);
+    case 'flow': {
+      const output = reachFlowOutput(network, nominal, reach);
+      if (typeof target.value === 'number') return output;
+      return { ...output, subject: { kind: 'reach flow', reach, sign: 1, asked: 'signed' } };
+    }
     case 'wall_shear':
       return shearOutput(network, reach, 'floor', target.at);
     case 'residence_time':
@@ -472,8 +505,8 @@ function refuseTarget(
   );
 }
 
-/** Whether a value keeps what is asked of it, with the slack of the rules. A window on a flow is one on its magnitude, whatever its direction. */
+/** Whether a value keeps what is asked of it, with the slack of the rules. A channel's window on a flow is one on its magnitude, whatever its direction. */
 export function isKept({ min, max, subject }: Output, value: number): boolean {
-  const judged = subject.kind === 'reach flow' ? Math.abs(value) : value;
+  const judged = subject.kind === 'reach flow' && subject.asked === 'size' ? Math.abs(value) : value;
   return !(min !== null && isBelow(judged, min)) && !(max !== null && isAbove(judged, max));
 }

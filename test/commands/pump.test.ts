@@ -72,7 +72,7 @@ describe('rillcheck pump', () => {
     ]);
     const [setting] = result.pump?.settings ?? [];
     expect(setting.supply_pressure_pa).toBeGreaterThan(setting.pressure_pa ?? Number.NaN);
-    expect(setting.within_limits).toBeNull();
+    expect(setting.within_limits).toBe(true);
     expect(result.ports[0]).toMatchObject({ condition: 'pressure', flow_m3_s: setting.flow_m3_s });
   });
 
@@ -93,6 +93,111 @@ describe('rillcheck pump', () => {
     expect(finding.fix).toContain(`wall_shear of lane is ${Number((0.5 * share).toPrecision(4))} Pa`);
   });
 
+  it('holds a setting for which no limit is given against what is usual, as a caution', async () => {
+    put('chip.svg', CHIP);
+    const pumped = async (target: string, limits = '', depth = '100 um') => {
+      put(
+        'chip.run.yaml',
+        `${SHEET.replace('wall_shear: 0.5 Pa', target).replace('100 um', depth).replace(', tubing: { bore: 0.2 mm, length: 200 mm }', '')}${limits}`,
+      );
+      const { out, code } = await rillcheck('pump', 'chip.svg', '--json', '--detail', 'ports');
+      const { findings, pump } = JSON.parse(out);
+      return {
+        code,
+        within: pump.settings[0].within_limits,
+        findings: findings.filter(({ rule }: { rule: string }) => rule === 'pump-limit'),
+      };
+    };
+    expect(await pumped('flow: 9 mL/min')).toMatchObject({ within: true, findings: [] });
+    const much = await pumped('flow: 11 mL/min');
+    expect(much).toMatchObject({
+      code: 0,
+      within: false,
+      findings: [{ severity: 'caution', limit: 10e-6 / 60, unit: 'm³/s', names: ['in', 'lane'] }],
+    });
+    expect(much.findings[0].message).toContain(
+      'give 11 mL/min, more than the 10 mL/min (typical value, not from your maker)',
+    );
+    expect(much.findings[0].fix).toMatch(/^write under pump_limits what the pump at in can do/);
+    expect((await pumped('flow: 9 mL/min', '', '4 um')).findings).toMatchObject([
+      { severity: 'caution', limit: 700e3 },
+    ]);
+    expect((await pumped('flow: -9 mL/min', '', '8 um')).findings).toMatchObject([
+      { severity: 'caution', limit: -80e3 },
+    ]);
+    // a limit that is given stands in the place of the usual one; the others stay
+    expect(await pumped('flow: 11 mL/min', 'pump_limits: { in: { max_flow: 20 mL/min } }\n')).toMatchObject({
+      within: true,
+      findings: [],
+    });
+    const both = await pumped('flow: 11 mL/min', 'pump_limits: { in: { max_pressure: 1 Pa } }\n');
+    expect(both.findings.map(({ severity }: { severity: string }) => severity)).toEqual([
+      'blocker',
+      'caution',
+    ]);
+    expect(both.within).toBe(false);
+  });
+
+  it('says in its row which blockers a setting breaks: an inlet that must draw, a chip that bursts, a window', async () => {
+    put('chip.svg', CHIP);
+    const row = async (target: string, more = '') => {
+      put(
+        'chip.run.yaml',
+        `${SHEET.replace('wall_shear: 0.5 Pa', target).replace('1 kPa', '1 kPa, expect: in')}${more}`,
+      );
+      const { out } = await rillcheck('pump', 'chip.svg', '-f', 'none');
+      const [settings] = out.split('\n\n').slice(1);
+      return settings;
+    };
+    expect(await row('flow: -5 uL/min')).toMatch(/\nin .* backflow {2}within/);
+    expect(await row('flow: 5 uL/min')).not.toContain('breaks');
+    expect(await row('flow: 5 uL/min', 'limits: { max_pressure: 1 Pa }\n')).toMatch(
+      /\nin .* over-pressure {2}within/,
+    );
+    const both = await row(
+      'flow: -5 uL/min',
+      'channels: { lane: { flow: { max: 1 uL/min } } }\npump_limits: { in: { max_flow: 1 uL/min } }\n',
+    );
+    expect(both.replace(/\s+/g, ' ')).toContain(
+      'the setting of in breaks backflow, flow-window, pump-limit: see the blockers',
+    );
+    // a blocker of the drawing is no fault of the setting
+    expect(await row('flow: 5 uL/min', 'limits: { min_width: 2 mm }\n')).not.toContain('breaks');
+  });
+
+  it('says in a box on page 1 that the settings were found, the old beside the new, and at the head of every page', async () => {
+    put('chip.svg', CHIP);
+    const page1 = async (more: string) => {
+      put('chip.run.yaml', `${SHEET}${more}`);
+      await rillcheck('pump', 'chip.svg', '-f', 'pdf', '-o', 'out');
+      const { pages } = await readPdf(new Uint8Array(readFileSync(join(folder, 'out/chip.pump.pdf'))));
+      for (const { texts } of pages)
+        expect(texts.map(({ text }) => text).join(' ')).toContain('at settings found, not given');
+      return pages[0].texts.map(({ text }) => text);
+    };
+    const texts = await page1('');
+    expect(texts.join(' ')).toContain(
+      'These settings were found, not given: everything in this document is computed at them, and not at the values of the run sheet.',
+    );
+    const { out } = await rillcheck('pump', 'chip.svg', '-f', 'none');
+    const [, pressure, flow] = /\nin +(\S+ kPa) +(\S+ µL\/min)/.exec(out) ?? [];
+    expect(texts).toContain('1 kPa');
+    expect(texts).toContain(`${pressure}, or ${flow}`);
+    const cases = await page1('cases: { one: {}, two: { ports: { in: { flow: 3 uL/min } } } }\n');
+    expect(cases).toEqual(
+      expect.arrayContaining(['Cases compared', 'in the run sheet', '1 kPa', '3 µL/min']),
+    );
+    await rillcheck('pump', 'chip.svg', '-f', 'svg', '-o', 'out');
+    expect(readFileSync(join(folder, 'out/chip.pump.case-one.svg'), 'utf8')).toMatch(
+      /<title>[^<]*at settings found, not given<\/title>[\s\S]*Computed at settings found, not given\.<\/text>/,
+    );
+    await rillcheck('check', 'chip.svg', '-f', 'pdf', '-o', 'out');
+    const plain = await readPdf(new Uint8Array(readFileSync(join(folder, 'out/chip.pdf'))));
+    expect(plain.pages.flatMap((page) => page.texts.map(({ text }) => text)).join(' ')).not.toContain(
+      'found, not given',
+    );
+  });
+
   it('draws a page with targets, settings and a curve for each', async () => {
     put('chip.svg', CHIP);
     put(
@@ -102,7 +207,7 @@ describe('rillcheck pump', () => {
     const { code, err } = await rillcheck('pump', 'chip.svg', '-f', 'pdf', '-o', 'out');
     expect(err).toBe('');
     expect(code).toBe(0);
-    const { pages } = await readPdf(new Uint8Array(readFileSync(join(folder, 'out/chip.pdf'))));
+    const { pages } = await readPdf(new Uint8Array(readFileSync(join(folder, 'out/chip.pump.pdf'))));
     const page = pages.find(({ texts }) => texts.some(({ text }) => text === 'Pump settings'));
     const texts = page?.texts.map(({ text }) => text) ?? [];
     for (const text of [
@@ -129,7 +234,10 @@ describe('rillcheck pump', () => {
     expect(code).toBe(0);
     expect(out).toContain('pump settings, case grow');
     expect(out).toContain('residence time of lane keeps its window while in holds');
-    const result = v.parse(resultSchema, JSON.parse(readFileSync(join(folder, 'out/chip.json'), 'utf8')));
+    const result = v.parse(
+      resultSchema,
+      JSON.parse(readFileSync(join(folder, 'out/chip.pump.json'), 'utf8')),
+    );
     if (!('cases' in result)) throw new Error('no cases');
     expect(result.cases.map((one) => one.pump?.settings.length ?? null)).toEqual([1, 1, null]);
     const range = result.cases[1].pump?.settings[0].range;
@@ -139,7 +247,7 @@ describe('rillcheck pump', () => {
       ((range?.flow_min_m3_s ?? 0) + (range?.flow_max_m3_s ?? 0)) / 2,
       18,
     );
-    const { pages } = await readPdf(new Uint8Array(readFileSync(join(folder, 'out/chip.pdf'))));
+    const { pages } = await readPdf(new Uint8Array(readFileSync(join(folder, 'out/chip.pump.pdf'))));
     const texts = pages.flatMap((page) => page.texts.map(({ text }) => text));
     expect(pages[0].texts.map(({ text }) => text)).toContain('Cases compared');
     expect(texts).toContain('Pump settings, case seed');

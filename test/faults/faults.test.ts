@@ -136,6 +136,14 @@ describe.skipIf(COPY === null)('the program as a process (skipped without dist/)
     },
   );
 
+  it('a picture that would be written over the layout ends with exit code 2, with a way out', () => {
+    const { status, stdout, stderr } = program(['check', 'chip.svg', '-o', '.', '-f', 'svg']);
+    expect(status, stderr).toBe(2);
+    expect(stdout).toBe('');
+    expect(stderr).toMatch(/^rillcheck: chip\.svg: it was read, .*: choose another folder with --out/);
+    expect(readFileSync(join(folder, 'chip.svg'), 'utf8')).toBe(CHIP);
+  });
+
   it('whoever reads a report while it is written again finds it whole', async () => {
     const argv = ['check', 'large.svg', '-f', 'json,csv', '-o', 'watched'];
     expect(program(argv).status).toBeLessThan(2);

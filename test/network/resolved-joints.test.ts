@@ -79,7 +79,10 @@ describe('corners', () => {
       { name: 'side', widthMm: W, lines: [[0, 0, 0, length, 2, length]] },
     ];
     expect(resolved(side(0.2)).kinds).toEqual({ 'T of equal ducts': 1, 'mitred corner': 1 });
-    expect(resolved(side(0.15)).kinds).toEqual({ 'corner not computed': 1, 'junction not computed': 1 });
+    expect(resolved(side(0.15)).kinds).toEqual({
+      'corner not computed': 1,
+      'junction with short arms not computed': 1,
+    });
   });
 });
 
@@ -177,8 +180,8 @@ describe('junctions', () => {
 
   it('computes neither unequal depths nor a side wider than the main', () => {
     const deep = legs(W, W, 0).map((spec) => (spec.name === 'side' ? { ...spec, depthMm: 0.2 } : spec));
-    expect(resolved(deep).kinds).toEqual({ 'junction not computed': 1 });
-    expect(resolved(legs(W, 1.1 * W, 0)).kinds).toEqual({ 'junction not computed': 1 });
+    expect(resolved(deep).kinds).toEqual({ 'T with a step in depth not computed': 1 });
+    expect(resolved(legs(W, 1.1 * W, 0)).kinds).toEqual({ 'T of unequal ducts not computed': 1 });
   });
 
   it('passes from a narrow side to an equal one without a jump over 0.01 w', () => {
@@ -214,7 +217,7 @@ describe('junctions', () => {
         { name: 'side', widthMm: W, lines: [[0, 0, 0, length]] },
       ]).kinds;
     expect(stub(0.31)).toEqual({ 'T of equal ducts': 1 });
-    expect(stub(0.29)).toEqual({ 'junction not computed': 1 });
+    expect(stub(0.29)).toEqual({ 'junction with short arms not computed': 1 });
   });
 
   it('counts wells as joints that nobody computed, with a bound and no length', () => {
@@ -333,7 +336,7 @@ describe('what nobody computed', () => {
       return buildNetwork({ ...chip, channels }).joints.map(({ kind }) => kind);
     };
     expect(kinds(false, 1.5 * W, W)).toEqual(['bend', 'T of equal ducts']);
-    expect(kinds(false, 1.2 * W, W)).toEqual(['bend', 'junction not computed']);
+    expect(kinds(false, 1.2 * W, W)).toEqual(['bend', 'junction with short arms not computed']);
     expect(kinds(false, 1.2 * W, 20 * W)).toEqual(['bend', 'T of equal ducts']);
     expect(kinds(true, 1.5 * W, W)).toEqual(['mitred corner', 'bend']);
     expect(kinds(true, 1.2 * W, W)).toEqual(['bend', 'corner not computed']);

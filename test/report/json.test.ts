@@ -18,7 +18,7 @@ describe('the JSON document', () => {
       ),
     );
     expect(Object.keys(document.ports[0])).toEqual(
-      'name x_mm y_mm diameter_mm condition pressure_pa supply_pressure_pa flow_m3_s tubing_volume_m3 tubing_time_s joint_flow_share'.split(
+      'name x_mm y_mm diameter_mm condition pressure_pa supply_pressure_pa flow_m3_s tubing_volume_m3 tubing_time_s joint_flow_share joint_pressure_share'.split(
         ' ',
       ),
     );
@@ -26,7 +26,7 @@ describe('the JSON document', () => {
       (
         'name channel layer from to width_m depth_m drawn_length_m length_m joint_length_m resistance_pa_s_m3 flow_m3_s pressure_drop_pa ' +
         'mean_velocity_m_s peak_velocity_m_s reynolds dean entrance_length_m wall_shear_floor_mean_pa wall_shear_floor_peak_pa ' +
-        'wall_shear_side_mean_pa wall_shear_side_peak_pa floor_share_inside_window residence_time_s fastest_time_s volume_m3'
+        'wall_shear_side_mean_pa wall_shear_side_peak_pa floor_share_inside_window residence_time_s fastest_time_s volume_m3 joint_flow_share'
       ).split(' '),
     );
     expect(Object.keys(document.segments[0])).toEqual(

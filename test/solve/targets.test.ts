@@ -202,14 +202,14 @@ describe('findSettings', () => {
         `pump_limits: { a: ${limits} }`,
       );
     const wide = findSettings(networkFrom(BRIDGE, sheet('{ max_pressure: 1 MPa }'))).targets[0];
-    expect(wide.reach?.isWithin).toBe(true);
+    expect(wide.reach.isWithin).toBe(true);
     const byPressure = findSettings(networkFrom(BRIDGE, sheet('{ max_pressure: 100 Pa }'))).targets[0];
     expect(byPressure.reach).toMatchObject({ isWithin: false, nearest: 100 });
     const byFlow = findSettings(networkFrom(BRIDGE, sheet('{ max_flow: 2.5 uL/min }'))).targets[0];
-    expect(byFlow.reach?.isWithin).toBe(false);
-    expect(rel(byFlow.reach?.nearest ?? 0, wide.response.setting / 2)).toBeLessThan(1e-10);
+    expect(byFlow.reach.isWithin).toBe(false);
+    expect(rel(byFlow.reach.nearest ?? 0, wide.response.setting / 2)).toBeLessThan(1e-10);
     const exact = sheet(`{ max_pressure: ${wide.response.setting} Pa }`);
-    expect(findSettings(networkFrom(BRIDGE, exact)).targets[0].reach?.isWithin).toBe(true);
+    expect(findSettings(networkFrom(BRIDGE, exact)).targets[0].reach.isWithin).toBe(true);
   });
 
   describe('refuses, at the line of the target,', () => {

@@ -54,11 +54,11 @@ test('the same inputs give the same bytes in every file, and another seed gives 
   };
   const [first, second, other] = [await write('a', '1'), await write('b', '1'), await write('c', '2')];
   expect(first.names).toEqual([
-    'chip.json',
-    'chip.pdf',
-    'chip.reaches.csv',
-    'chip.segments.csv',
     'chip.spread.csv',
+    'chip.spread.json',
+    'chip.spread.pdf',
+    'chip.spread.reaches.csv',
+    'chip.spread.segments.csv',
     'draws.csv',
   ]);
   expect(second.files).toEqual(first.files);
@@ -67,12 +67,12 @@ test('the same inputs give the same bytes in every file, and another seed gives 
   expect(draws).toHaveLength(302);
   expect(draws[0]).toMatch(/^draw,good,flow of port feed/);
   expect(draws[300]).toMatch(/^299,[01],/);
-  expect(first.files[4]).toMatch(/share depth:lanes,share width,share temperature\r\n/);
+  expect(first.files[0]).toMatch(/share depth:lanes,share width,share temperature\r\n/);
 });
 
 test('the PDF has pages on the spread: yield, tolerances, causes as a figure, a distribution for each number of a window', async () => {
   await run(['spread', 'chip.svg', '-f', 'pdf', '--draws', '400'], fakeIo(folder));
-  const pdf = await readPdf(new Uint8Array(readFileSync(join(folder, 'reports/chip.pdf'))));
+  const pdf = await readPdf(new Uint8Array(readFileSync(join(folder, 'reports/chip.spread.pdf'))));
   const page = pdf.pages.find(({ texts }) => texts.some(({ text }) => text === 'Spread'));
   const text = page?.texts.map((run) => run.text).join(' ') ?? '';
   expect(pdf.bookmarks).toContain('Spread');
@@ -130,13 +130,16 @@ test('Ctrl-C while drawing reports what was drawn, says so everywhere, and exits
   // the stages of the check pass; the next question comes from the drawing
   const io = fakeIo(folder, { isInterrupted: () => ++calls > 5 });
   expect(await run(['spread', 'chip.svg', '-f', 'json,pdf', '--draws', '1000000'], io)).toBe(130);
-  const result = v.parse(singleSchema, JSON.parse(readFileSync(join(folder, 'reports/chip.json'), 'utf8')));
+  const result = v.parse(
+    singleSchema,
+    JSON.parse(readFileSync(join(folder, 'reports/chip.spread.json'), 'utf8')),
+  );
   const { draws, draws_asked } = result.spread ?? { draws: 0, draws_asked: 0 };
   expect(draws_asked).toBe(1_000_000);
   expect(draws).toBeLessThan(1_000_000);
   expect(io.stderr()).toContain('stopped before the end');
   expect(io.stdout()).toContain(`${draws} of 1000000 draws were made`);
-  const pdf = await readPdf(new Uint8Array(readFileSync(join(folder, 'reports/chip.pdf'))));
+  const pdf = await readPdf(new Uint8Array(readFileSync(join(folder, 'reports/chip.spread.pdf'))));
   const text = pdf.pages.flatMap(({ texts }) => texts.map((run) => run.text)).join(' ');
   expect(text).toContain(`Stopped before its end: ${draws} of 1000000 draws were made.`);
 });
@@ -155,9 +158,9 @@ test('each case has a spread of its own', async () => {
     ['slow', 1],
     ['fast', expect.any(Number)],
   ]);
-  expect(readdirSync(folder)).toEqual(expect.arrayContaining(['draws.slow.csv', 'draws.fast.csv']));
+  expect(readdirSync(folder)).toEqual(expect.arrayContaining(['draws.case-slow.csv', 'draws.case-fast.csv']));
   expect(readdirSync(join(folder, 'reports'))).toEqual(
-    expect.arrayContaining(['chip.slow.spread.csv', 'chip.fast.spread.csv']),
+    expect.arrayContaining(['chip.spread.case-slow.csv', 'chip.spread.case-fast.csv']),
   );
 });
 

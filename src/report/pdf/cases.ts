@@ -7,6 +7,7 @@ import { verdictCounts } from '../verdict-line.ts';
 import { BODY, type PageContext, SMALL } from './context.ts';
 import { drawingText } from './document.ts';
 import { factsHeight, writeFacts } from './facts.ts';
+import { writeFoundBox } from './found-box.ts';
 import { FACTS, inputFacts, writePressureMap } from './front-page.ts';
 import type { Element, Paper } from './paper.ts';
 import { SIGN_HEIGHT, writeBanner, writeSignatures } from './sign-off.ts';
@@ -45,6 +46,7 @@ export function writeCases(contexts: readonly PageContext[]): void {
     rules_not_run: total(({ rules_not_run }) => rules_not_run),
   });
   writeBanner(paper, section, report.result.verdict, `all cases together: ${counts}`);
+  writeFoundBox(paper, section, cases);
   paper.paragraph(
     section,
     `${cases.length} cases of one chip, each solved and judged on its own; the chip is ${report.result.verdict === 'ready' ? 'ready: no case has a blocker' : 'on hold: at least one case has a blocker'}.`,

@@ -1,5 +1,6 @@
+import { AT_FOUND_SETTINGS } from '../pump-rows.ts';
 import type { Report } from '../report.ts';
-import { plural, verdictLine } from '../verdict-line.ts';
+import { casesLine, verdictLine } from '../verdict-line.ts';
 import { writeCases } from './cases.ts';
 import { writeCautions } from './cautions.ts';
 import { isoDate, pageContext } from './context.ts';
@@ -33,7 +34,12 @@ export function writePdf(report: Report, options: PdfOptions): Promise<Uint8Arra
   const { sheet } = cases[0].network.chip;
   const creator = `${result.tool.name} ${result.tool.version}`;
   const title = sheet?.title ?? result.layout.file;
-  const paper = new Paper({ ...options, title, subject: `Check of ${result.layout.file}`, creator });
+  const paper = new Paper({
+    ...options,
+    title,
+    subject: `${subjectOf(cases)} of ${result.layout.file}`,
+    creator,
+  });
   const contexts = cases.map((one) => pageContext(paper, report, one, options.date));
   writeCases(contexts);
   for (const context of contexts) {
@@ -64,14 +70,18 @@ export function writePdf(report: Report, options: PdfOptions): Promise<Uint8Arra
   ]);
 }
 
-function headLine({ result, cases }: Report, title: string): string {
+function subjectOf(cases: Report['cases']): string {
+  if (cases.some(({ pump }) => pump !== undefined)) return 'Pump settings';
+  return cases.some(({ spread }) => spread !== undefined) ? 'Spread' : 'Check';
+}
+
+function headLine(report: Report, title: string): string {
+  const { result, cases } = report;
   const { sheet } = cases[0].network.chip;
   const drawing = sheet === null ? '' : drawingText(sheet.drawing);
-  const verdict =
-    'cases' in result
-      ? `${plural(cases.length, 'case')}: ${result.verdict}`
-      : verdictLine(result.verdict, result.counts);
-  return [title, drawing, verdict].filter((part) => part !== '').join('  ·  ');
+  const verdict = 'cases' in result ? casesLine(report) : verdictLine(result.verdict, result.counts);
+  const settings = cases.some(({ pump }) => pump !== undefined) ? AT_FOUND_SETTINGS : '';
+  return [title, drawing, verdict, settings].filter((part) => part !== '').join('  ·  ');
 }
 
 /** "C-114 revision B": what of it the run sheet gives. */

@@ -1,4 +1,5 @@
 import type { Chip } from '../../chip/types.ts';
+import { listText } from '../../findings/words.ts';
 import {
   formatBound,
   formatMm,
@@ -8,14 +9,17 @@ import {
   type Shown,
   type Unit,
 } from '../../runsheet/shown.ts';
+import { jointsText } from '../joints-text.ts';
 import { drawMap, mapNotes } from '../map.ts';
 import { cleanText } from '../plain-text.ts';
 import { hasWindow, outsideWindows, reachesThatMatter, windowTexts } from '../reach-values.ts';
+import { casesLeftOut } from '../report.ts';
 import type { PortRow, ReachRow } from '../result-schema.ts';
 import { plural, verdictCounts } from '../verdict-line.ts';
-import { BODY, depthFrom, isoDate, type PageContext, SMALL } from './context.ts';
+import { BODY, BODY_BOLD, depthFrom, isoDate, type PageContext, SMALL } from './context.ts';
 import { drawingText } from './document.ts';
 import { factsHeight, writeFacts } from './facts.ts';
+import { writeFoundBox } from './found-box.ts';
 import { paintMap } from './paint-map.ts';
 import { type Element, POINTS_PER_MM } from './paper.ts';
 import { SIGN_HEIGHT, writeBanner, writeSignatures } from './sign-off.ts';
@@ -73,6 +77,15 @@ function writeVerdict({ paper, report, one }: PageContext, section: Element): vo
   paper.paragraph(section, drawing.join(', '), BODY);
   const counts = `${verdictCounts(part.counts)}, ${plural(part.counts.notes, 'note')}`;
   writeBanner(paper, section, part.verdict, counts);
+  writeFoundBox(paper, section, [one]);
+  const leftOut = casesLeftOut(report);
+  if (leftOut.length > 0) {
+    paper.paragraph(
+      section,
+      `Of this case alone. Not looked at: ${plural(leftOut.length, 'other case')} of the run sheet (${cleanText(listText(leftOut, 8))}).`,
+      BODY_BOLD,
+    );
+  }
   const listed =
     part.not_run.length === 0
       ? 'Every rule was run.'
@@ -156,7 +169,10 @@ export function portsTable(
     largest((port) => port.tubing_time_s),
   );
   const withTubing = all.some((port) => port.tubing_volume_m3 !== null);
-  const withJoints = all.some((port) => port.joint_flow_share !== null);
+  const withJoints = all.some(
+    ({ joint_flow_share, joint_pressure_share }) =>
+      joint_flow_share !== null || joint_pressure_share !== null,
+  );
   const number = (value: number | null, si: number): string =>
     value === null ? '–' : formatNumber(value / si);
   const columns: Column[] = [
@@ -172,9 +188,7 @@ export function portsTable(
         ] as const)
       : []),
     ...(withJoints
-      ? ([
-          { head: 'joints not resolved', unit: 'could move this flow by ±', align: 'right', width: 'fit' },
-        ] as const)
+      ? ([{ head: 'joints not resolved', unit: 'could move by ±', align: 'right', width: 'fit' }] as const)
       : []),
   ];
   const rows = shown.map((port) =>
@@ -185,10 +199,23 @@ export function portsTable(
       number(port.supply_pressure_pa, pressure.si),
       number(port.flow_m3_s, flow.si),
       ...(withTubing ? [number(port.tubing_volume_m3, volume.si), number(port.tubing_time_s, time.si)] : []),
-      ...(withJoints ? [formatBound(port.joint_flow_share)] : []),
+      ...(withJoints ? [jointText(port)] : []),
     ),
   );
   return { columns, rows };
+}
+
+/** "flow 2.2 %, pressure 3 %": of what is given nothing is said, for it does not move. */
+export function jointText({
+  joint_flow_share,
+  joint_pressure_share,
+}: Pick<PortRow, 'joint_flow_share' | 'joint_pressure_share'>): string {
+  const parts = [
+    joint_flow_share ? `flow ${formatBound(joint_flow_share)}` : '',
+    joint_pressure_share ? `pressure ${formatBound(joint_pressure_share)}` : '',
+  ].filter((part) => part !== '');
+  if (parts.length > 0) return parts.join(', ');
+  return joint_flow_share === null && joint_pressure_share === null ? '–' : formatBound(0);
 }
 
 const REACHES_SHOWN = 14;
@@ -209,6 +236,7 @@ function writeReachesThatMatter({ paper, one }: PageContext, section: Element, r
   const time = unit('residence_time', (row) => row.residence_time_s);
   const number = (value: number | null, { si }: Unit): string =>
     value === null ? '–' : formatNumber(value / si);
+  const withJoints = rows.some(({ joint_flow_share }) => joint_flow_share !== null);
   paper.heading(section, 3, windows ? 'Reaches with a window' : 'The most sheared reaches');
   drawTable(
     paper,
@@ -216,6 +244,9 @@ function writeReachesThatMatter({ paper, one }: PageContext, section: Element, r
     [
       { head: 'reach', align: 'left', width: 'share' },
       { head: 'flow', unit: flow.text, align: 'right', width: 'fit' },
+      ...(withJoints
+        ? ([{ head: 'joints move', unit: 'it by ±', align: 'right', width: 'fit' }] as const)
+        : []),
       { head: 'floor shear mean', unit: shear.text, align: 'right', width: 'fit' },
       { head: 'peak', unit: shear.text, align: 'right', width: 'fit' },
       { head: 'time mean', unit: time.text, align: 'right', width: 'fit' },
@@ -232,6 +263,7 @@ function writeReachesThatMatter({ paper, one }: PageContext, section: Element, r
         cells: [
           isOutside ? `✗ ${row.name}` : row.name,
           number(row.flow_m3_s, flow),
+          ...(withJoints ? [formatBound(row.joint_flow_share)] : []),
           number(row.wall_shear_floor_mean_pa, shear),
           number(row.wall_shear_floor_peak_pa, shear),
           number(row.residence_time_s, time),
@@ -251,6 +283,7 @@ function writeReachesThatMatter({ paper, one }: PageContext, section: Element, r
 export function inputFacts({ report, one, date }: PageContext): readonly (readonly [string, string])[] {
   const { chip } = one.network;
   const { layout, run_sheet, tool } = report.result;
+  const joints = jointsText(one.network.joints);
   return [
     ['layout', `${layout.file}, SHA-256 ${layout.sha256}`],
     [
@@ -266,7 +299,7 @@ export function inputFacts({ report, one, date }: PageContext): readonly (readon
       'joints',
       chip.joints === 'centreline'
         ? 'centreline: corners, bends and junctions add nothing of their own'
-        : 'resolved: each computed joint adds its end correction',
+        : `resolved: each computed joint adds its end correction${joints === null ? '' : `; ${joints}`}`,
     ],
     ['not read', ignoredText(chip)],
     ['written', `by ${tool.name} ${tool.version} on ${isoDate(date)}`],

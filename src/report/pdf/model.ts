@@ -1,7 +1,9 @@
 import type { Chip, Sourced } from '../../chip/types.ts';
-import { formatBound, formatMm, formatNumber } from '../../runsheet/shown.ts';
+import { formatMm, formatNumber } from '../../runsheet/shown.ts';
+import { jointsText } from '../joints-text.ts';
 import type { ReportedCase } from '../report.ts';
 import { BODY, depthFrom, type PageContext } from './context.ts';
+import { jointText } from './front-page.ts';
 import type { Element, Paper } from './paper.ts';
 import { cells, drawTable, type TableRow } from './table.ts';
 
@@ -38,7 +40,7 @@ function modelTexts(chip: Chip): readonly string[] {
     'Wells. Inside a port the fluid is open: no resistance, part of no reach. Lengths start at the rim.',
     chip.joints === 'centreline'
       ? 'Joints. Lengths follow the centrelines; corners, bends and junctions add nothing of their own. Against resolved three-dimensional flow that over-estimates a serpentine of mitred turns by 5 to 8 % and under-estimates a feeder into a chamber by about 5 %.'
-      : 'Joints. Corners, bends and junctions whose case was computed add their end correction; the others keep the centreline rules, and how far they could move each flow is with the ports.',
+      : 'Joints. Corners, bends and junctions whose case was computed add their end correction; the others keep the centreline rules, and how far they could move flows and pressures is with the ports and reaches.',
     'Shear is that of the fully developed profile: the floor is the etched bottom (and the lid), width wide; the sides are depth high. Mean is over the wall, peak is in its middle. Cells sit on the floor.',
     'Residence time is volume over flow; the fastest fluid moves on the axis and passes in length over peak velocity. Both use the duct length without what joints add.',
   ];
@@ -108,6 +110,8 @@ function writeJoints(paper: Paper, section: Element, one: ReportedCase): void {
       cells(kind, String(count), lengthText(addedMm), lengthText(boundMm), formatMm(xMm), formatMm(yMm)),
     ),
   );
+  const joints = jointsText(network.joints);
+  if (joints !== null && network.chip.joints === 'resolved') paper.paragraph(section, `${joints}.`, BODY);
   const sum = (lengths: Float64Array): number => lengths.reduce((total, length) => total + length, 0);
   const centreline = lengthText(sum(network.reachCentrelineMm));
   const counted = lengthText(sum(network.reachDuctMm));
@@ -144,14 +148,14 @@ function writeCentrelineFlows(
       { head: 'port', align: 'left', width: 'share' },
       { head: 'flow into chip, as counted', align: 'right', width: 'fit' },
       { head: 'by centrelines alone', align: 'right', width: 'fit' },
-      { head: 'joints not resolved could move this flow by ±', align: 'right', width: 'fit' },
+      { head: 'joints not resolved could move by ±', align: 'right', width: 'fit' },
     ],
-    ports.map(({ name, flow_m3_s, joint_flow_share }, i) =>
+    ports.map((port, i) =>
       cells(
-        name,
-        show.text('flow', flow_m3_s),
+        port.name,
+        show.text('flow', port.flow_m3_s),
         Number.isFinite(flows[i]) ? show.text('flow', flows[i]) : '–',
-        formatBound(joint_flow_share),
+        jointText(port),
       ),
     ),
   );

@@ -47,11 +47,12 @@ export function writePump({ paper, one }: PageContext): void {
       { head: 'pressure to hold', unit: 'at the pump', align: 'right', width: 'fit' },
       { head: 'or flow to give', unit: 'into the chip', align: 'right', width: 'fit' },
       { head: 'pressure', unit: 'in the chip', align: 'right', width: 'fit' },
+      { head: 'breaks', align: 'left', width: 'wrap' },
       { head: 'pump limits', align: 'left', width: 'wrap' },
     ],
     pump.targets.map((target) => {
-      const { port, pressure, flow, inChip, limits } = settingCells(network, target, show);
-      return cells(port, pressure, flow, inChip, limits);
+      const { port, pressure, flow, inChip, breaks, limits } = settingCells(one, target);
+      return cells(port, pressure, flow, inChip, breaks === '' ? 'no limit' : breaks, limits);
     }),
     { size: 7.5 },
   );

@@ -1,0 +1,113 @@
+import type { Chip } from '../../src/chip/types.ts';
+import { findAll } from '../../src/findings/check.ts';
+import { RULES } from '../../src/findings/rules.ts';
+import type { Network } from '../../src/network/types.ts';
+import type { TargetEntry } from '../../src/runsheet/types.ts';
+import { solveFlow } from '../../src/solve/flow-state.ts';
+import { observe, readTargets, targetValue } from '../../src/solve/targets-wanted.ts';
+import type { FlowState } from '../../src/solve/types.ts';
+import { drawSource } from '../../src/spread/low-discrepancy.ts';
+import { deviate, listVariables, type Variable } from '../../src/spread/variables.ts';
+import type { Varying } from './spread-of.ts';
+
+/** Rules whose findings say that a window or a limit of the flow is not kept, whatever their severity. */
+const FLOW_RULES = new Set([
+  'shear-window',
+  'residence-window',
+  'flow-window',
+  'pump-limit',
+  'over-pressure',
+  'under-pressure',
+  'not-laminar',
+]);
+const RULES_OF_FLOW = RULES.filter(({ names }) => names.some((name) => FLOW_RULES.has(name)));
+
+/**
+ * 1 for each draw that keeps all that is asked, found a second way: every draw is made a chip of its own, solved and judged by the
+ * rules that a check runs; windows of targets by what the command pump observes.
+ */
+export function goodDraws({ network, tolerances }: Varying, draws: number, seed: number): number[] {
+  const { variables } = listVariables(network.chip, tolerances);
+  const { uniform } = drawSource(seed);
+  return Array.from({ length: draws }, (_, i) => {
+    const x = variables.map(({ tolerance }, k) => deviate(tolerance, uniform(k, i)));
+    return isGood({ ...network, chip: variedChip(network.chip, variables, x) }) ? 1 : 0;
+  });
+}
+
+function isGood(network: Network): boolean {
+  const { chip } = network;
+  const flow = solveFlow(network);
+  const { findings } = findAll({ chip, network, flow }, RULES_OF_FLOW);
+  return (
+    findings.every(({ rule, accepted }) => !FLOW_RULES.has(rule) || accepted !== null) &&
+    keepsTargets(network, flow)
+  );
+}
+
+function keepsTargets(network: Network, flow: FlowState): boolean {
+  return readTargets(network).every(({ entry, observed, measure }) => {
+    const value = targetValue(measure, observe(flow, observed));
+    return typeof entry.value === 'number' || isWithin(entry.value, value);
+  });
+}
+
+function isWithin({ min, max }: Exclude<TargetEntry['value'], number>, value: number): boolean {
+  return !(min !== null && value < min) && !(max !== null && value > max);
+}
+
+/** The chip with one draw's deviations in it. Lengths and joins stay those of the drawing, as the model of the spread has them. */
+function variedChip(chip: Chip, variables: readonly Variable[], x: readonly number[]): Chip {
+  const sum = (isMeant: (variable: Variable) => boolean, value: number): number =>
+    variables.reduce((total, variable, k) => {
+      if (!isMeant(variable)) return total;
+      return total + (variable.tolerance.kind === 'relative' ? x[k] * value : x[k]);
+    }, 0);
+  const channels = chip.channels.map((channel, c) => {
+    const depthMm =
+      channel.depthMm +
+      1000 *
+        sum(
+          (of) => of.kind === 'common depth' || (of.kind === 'depth' && of.layer === channel.layer),
+          channel.depthMm / 1000,
+        );
+    const drawnWidthMm =
+      channel.drawnWidthMm +
+      1000 *
+        sum(
+          (of) => of.kind === 'mask width' || (of.kind === 'own width' && of.channel === c),
+          channel.drawnWidthMm / 1000,
+        );
+    const ductWidthMm = drawnWidthMm + (channel.profile === 'isotropic' ? (Math.PI * depthMm) / 2 : 0);
+    return { ...channel, depthMm, drawnWidthMm, ductWidthMm };
+  });
+  const kelvin = chip.fluid.temperatureK + sum(({ kind }) => kind === 'temperature', 0);
+  const thinning = 1 + sum(({ kind }) => kind === 'viscosity', 1);
+  const { viscosityAt, densityAt } = chip.fluid;
+  const fluid = {
+    ...chip.fluid,
+    temperatureK: kelvin,
+    viscosityPaS: viscosityAt(kelvin) * thinning,
+    densityKgM3: densityAt?.(kelvin) ?? chip.fluid.densityKgM3,
+    viscosityAt: (other: number) => viscosityAt(other) * thinning,
+  };
+  const ports = chip.ports.map((port, p) => {
+    const { condition } = port;
+    const tubing = port.tubing.map((piece) => ({
+      ...piece,
+      boreM: piece.boreM + sum(({ kind }) => kind === 'bore', piece.boreM),
+    }));
+    if (condition.kind === 'pressure') {
+      const { pressurePa } = condition;
+      const more = sum((of) => of.kind === 'pressure' && of.port === p, pressurePa);
+      return { ...port, tubing, condition: { ...condition, pressurePa: pressurePa + more } };
+    }
+    if (condition.kind === 'flow') {
+      const { flowM3s } = condition;
+      const more = sum((of) => of.kind === 'flow' && of.port === p, flowM3s);
+      return { ...port, tubing, condition: { ...condition, flowM3s: flowM3s + more } };
+    }
+    return { ...port, tubing };
+  });
+  return { ...chip, channels, fluid, ports };
+}
