@@ -143,7 +143,12 @@ function toStroke(shape: Shape, drawn: Drawn, flat: Flattened, laying: Laying): 
     ...drawn,
     width: strokeWidth(shape, laying),
     linecap: shape.style.linecap,
-    centrelines: flat.subpaths.map(({ points, closed, bendRadius }) => ({ points, closed, bendRadius })),
+    centrelines: flat.subpaths.map(({ points, closed, bendRadius, curves }) => ({
+      points,
+      closed,
+      bendRadius,
+      curves,
+    })),
     dataDepth: shape.dataDepth ?? enclosingOf(shape, laying).dataDepth,
     disguises: disguisesOf(shape, flat),
   };

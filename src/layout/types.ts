@@ -3,12 +3,16 @@
  * Curves are already cut into straight pieces; each piece keeps its curve's bend radius.
  */
 
+import type { Curve } from '../geometry/curve.ts';
+
 export interface Centreline {
   /** x0 y0 x1 y1 … ; consecutive points differ; a closed centreline repeats its first point at the end. */
   readonly points: Float64Array;
   readonly closed: boolean;
   /** One per piece (points − 1): the curve's radius of curvature there, 0 for a straight piece. */
   readonly bendRadius: Float64Array;
+  /** The curve that each piece was cut from, null for a straight one; null when all are straight. */
+  readonly curves: readonly (Curve | null)[] | null;
 }
 
 /** What every drawn thing carries, so that names and findings can point into the drawing. */

@@ -1,4 +1,4 @@
-import { endsAtVertex, startsAtVertex } from '../geometry/pieces.ts';
+import { endsAtDrawnVertex, startsAtDrawnVertex } from '../geometry/pieces.ts';
 import { distanceToSegment, nearestParameter } from '../geometry/segment.ts';
 import type { Draft } from './draft.ts';
 
@@ -46,8 +46,8 @@ function markCrossing(draft: Draft, i: number, j: number): boolean {
 /** Inner vertices of piece i that lie on piece j within slack. */
 function markTouches(draft: Draft, i: number, j: number): void {
   const { pieces } = draft;
-  if (startsAtVertex(pieces, i)) markTouch(draft, i, 0, pieces.x1[i], pieces.y1[i], j);
-  if (endsAtVertex(pieces, i)) markTouch(draft, i, 1, pieces.x2[i], pieces.y2[i], j);
+  if (startsAtDrawnVertex(pieces, i)) markTouch(draft, i, 0, pieces.x1[i], pieces.y1[i], j);
+  if (endsAtDrawnVertex(pieces, i)) markTouch(draft, i, 1, pieces.x2[i], pieces.y2[i], j);
 }
 
 function markTouch(draft: Draft, i: number, s: number, x: number, y: number, j: number): void {

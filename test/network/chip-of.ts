@@ -91,6 +91,7 @@ function toChannel(spec: ChannelSpec, ordinal: number, depths: readonly string[]
       points: Float64Array.from(line),
       closed: spec.closed ?? false,
       bendRadius: new Float64Array(line.length / 2 - 1),
+      curves: null,
     })),
     disguises: [],
     settings: null,
