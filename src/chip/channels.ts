@@ -1,5 +1,5 @@
 import { InputError } from '../errors.ts';
-import { scaledCurve } from '../geometry/curve.ts';
+import { scaledCurves } from '../geometry/curve.ts';
 import type { Centreline, Stroke } from '../layout/types.ts';
 import { isotropicSection } from '../physics/section.ts';
 import { quote } from '../runsheet/quote.ts';
@@ -130,7 +130,7 @@ function inMm({ points, closed, bendRadius, curves }: Centreline, unitMm: number
     points: scaled(points, unitMm),
     closed,
     bendRadius: scaled(bendRadius, unitMm),
-    curves: curves?.map((curve) => curve && scaledCurve(curve, unitMm)) ?? null,
+    curves: scaledCurves(curves, unitMm),
   };
 }
 

@@ -49,7 +49,8 @@ export function selectItems(
   const setAside = new Map<string, string>();
   for (const [kind, count] of Object.entries(layout.unread)) ignored.add(kind, count);
   const isIgnored = ignoreTest(sheet?.ignore ?? []);
-  const inside = edge !== null && sheet?.outline != null ? indexRings([edge.rings]) : null;
+  const inside =
+    edge !== null && sheet?.outline != null ? indexRings([edge.rings.map(({ points }) => points)]) : null;
 
   const leaveOut = (item: LayoutItem, kind: string, why: string): void => {
     ignored.add(kind);

@@ -1,6 +1,7 @@
 import Flatten from '@flatten-js/core';
 import Flatbush from 'flatbush';
 import type { ChipEdge } from '../chip/types.ts';
+import { type Curve, FINE_MM, finePieces } from '../geometry/curve.ts';
 import { segmentDistance } from '../geometry/segment.ts';
 import { closestPoints, type Line } from './closest.ts';
 import type { FindingContext } from './context.ts';
@@ -30,13 +31,16 @@ const ROUNDING_MM = 1e-9;
 export function findEdgeFaults(context: FindingContext, edge: ChipEdge, marginMm: number): EdgeFault[] {
   const { chip, network } = context;
   const { pieces } = network.trace.near;
-  const outline = toOutline(edge.rings);
+  const outline = toOutline(edge.rings.map((ring, k) => fineRing(ring, edge.ringCurves?.[k] ?? null)));
   if (outline.sides.length === 0) return [];
   const faults: EdgeFault[] = [];
+  // What lies along a curve at exactly the margin is not within it: its straight pieces may be, by so much.
+  const edgeSlackMm = (edge.ringCurves ?? []).some((curves) => curves !== null) ? FINE_MM : 0;
+  const slackOf = (i: number): number => edgeSlackMm + Math.min(FINE_MM, pieces.bulge[i]);
 
   for (const port of chip.ports) {
     const near = measure(outline, [port.xMm, port.yMm, port.xMm, port.yMm], port.radiusMm);
-    if (isFault(near.gapMm, marginMm)) {
+    if (isFault(near.gapMm + edgeSlackMm, marginMm)) {
       faults.push(toFault(port.name, true, near));
     }
   }
@@ -48,16 +52,17 @@ export function findEdgeFaults(context: FindingContext, edge: ChipEdge, marginMm
     const { name } = chip.channels[pieces.centrelineChannel[c]];
     for (let i = first; i < pieces.firstPiece[c + 1]; i++) {
       let near: Near | null = null;
-      if (comesNear(outline, pieces.half[i] * Math.SQRT2 + marginMm, lineOf(pieces, i))) {
+      const reach = pieces.half[i] * Math.SQRT2 + pieces.bulge[i];
+      if (comesNear(outline, reach + marginMm, lineOf(pieces, i))) {
         near = nearOfPiece(i);
         inside = isInside(outline.rings, pieces.x2[i], pieces.y2[i]);
       } else if (!inside) {
         near = farOutside(i);
       }
-      const isAtFault = near !== null && isFault(near.gapMm, marginMm);
+      const isAtFault = near !== null && isFault(near.gapMm + slackOf(i), marginMm);
       if (near !== null && isAtFault) worst = worst === null ? near : worseOf(worst, near);
       // Two pieces that come near the edge and meet far from it are two places.
-      if (worst !== null && !(isAtFault && (!inside || isFault(gapAtEnd(i), marginMm)))) {
+      if (worst !== null && !(isAtFault && (!inside || isFault(gapAtEnd(i) + slackOf(i), marginMm)))) {
         faults.push(toFault(name, false, worst));
         worst = null;
       }
@@ -105,6 +110,19 @@ function isFault(gapMm: number, marginMm: number): boolean {
 interface Near extends Pick<EdgeFault, 'gapMm' | 'xMm' | 'yMm' | 'mark'> {
   /** The distance is the same along the whole line; the place is its middle. */
   readonly isEven: boolean;
+}
+
+/** The ring with its curves cut so finely that the distance from them is exact to 0.1 µm. */
+function fineRing(ring: Float64Array, curves: readonly (Curve | null)[] | null): Float64Array {
+  if (curves === null) return ring;
+  const points = [ring[0], ring[1]];
+  for (let k = 0; 2 * k + 3 < ring.length; k++) {
+    const curve = curves[k];
+    const fine = curve ? finePieces(curve, FINE_MM) : [];
+    for (const { x, y } of fine.slice(0, -1)) points.push(x, y);
+    points.push(ring[2 * k + 2], ring[2 * k + 3]);
+  }
+  return Float64Array.from(points);
 }
 
 interface Outline {

@@ -1,4 +1,5 @@
 import type { Chip } from '../chip/types.ts';
+import { FINE_MM, finePieces } from '../geometry/curve.ts';
 import { endsAtVertex, type Pieces, startsAtVertex } from '../geometry/pieces.ts';
 import { type Closest, closestPoints, type Line, nearer } from './closest.ts';
 
@@ -28,7 +29,7 @@ export function gapBetween(chip: Chip, pieces: Pieces, i: number, j: number): Cl
     }
   }
   if (best !== null && best.distanceMm > 0) return best;
-  const overlap = closestPoints(lineOf(pieces, i), lineOf(pieces, j));
+  const overlap = closestOf(linesOf(pieces, i), linesOf(pieces, j));
   return { ...overlap, distanceMm: Math.min(0, overlap.distanceMm - pieces.half[i] - pieces.half[j]) };
 }
 
@@ -123,37 +124,71 @@ function gapToPart(chip: Chip, pieces: Pieces, i: number, other: Part): Closest 
   return best as Closest;
 }
 
+/** The piece as straight lines that its curve departs from by no more than FINE_MM. */
+function linesOf(pieces: Pieces, i: number): readonly Line[] {
+  const curve = pieces.curves.get(i);
+  if (curve === undefined) return [lineOf(pieces, i)];
+  let x = pieces.x1[i];
+  let y = pieces.y1[i];
+  return finePieces(curve, FINE_MM).map((fine): Line => {
+    const line: Line = [x, y, fine.x, fine.y];
+    x = fine.x;
+    y = fine.y;
+    return line;
+  });
+}
+
 function partsOf(chip: Chip, pieces: Pieces, i: number): Part[] {
   const { linecap } = chip.channels[pieces.channel[i]];
   const half = pieces.half[i];
   const flatStart = linecap !== 'round' && !startsAtVertex(pieces, i);
   const flatEnd = linecap !== 'round' && !endsAtVertex(pieces, i);
-  if (!flatStart && !flatEnd) return [{ lines: [lineOf(pieces, i)], radius: half, corners: null }];
-  const ux = (pieces.x2[i] - pieces.x1[i]) / pieces.length[i];
-  const uy = (pieces.y2[i] - pieces.y1[i]) / pieces.length[i];
+  const lines = linesOf(pieces, i);
+  if (!flatStart && !flatEnd) return [{ lines, radius: half, corners: null }];
   const beyond = linecap === 'square' ? half : 0;
-  const ax = pieces.x1[i] - (flatStart ? ux * beyond : 0);
-  const ay = pieces.y1[i] - (flatStart ? uy * beyond : 0);
-  const bx = pieces.x2[i] + (flatEnd ? ux * beyond : 0);
-  const by = pieces.y2[i] + (flatEnd ? uy * beyond : 0);
-  const nx = -uy * half;
-  const ny = ux * half;
-  const corners = [
-    [ax + nx, ay + ny],
-    [bx + nx, by + ny],
-    [bx - nx, by - ny],
-    [ax - nx, ay - ny],
-  ] as const;
-  const parts: Part[] = [
-    {
-      lines: corners.map(([x, y], k) => [x, y, ...corners[(k + 1) % 4]]),
-      radius: 0,
-      corners,
-    },
-  ];
-  if (!flatStart) parts.push(disc(pieces.x1[i], pieces.y1[i], half));
-  if (!flatEnd) parts.push(disc(pieces.x2[i], pieces.y2[i], half));
+  const parts: Part[] = [];
+  lines.forEach((line, k) => {
+    const start = flatStart && k === 0 ? 2 * pieces.centreline[i] : -1;
+    const end = flatEnd && k === lines.length - 1 ? 2 * pieces.centreline[i] + 1 : -1;
+    if (start < 0 && end < 0) parts.push({ lines: [line], radius: half, corners: null });
+    else addFlatParts(parts, pieces, line, half, beyond, start, end);
+  });
   return parts;
+}
+
+/** A straight line whose area is cut flat at the ends named (−1: round), square to the channel there. */
+function addFlatParts(
+  into: Part[],
+  pieces: Pieces,
+  [ax, ay, bx, by]: Line,
+  half: number,
+  beyond: number,
+  start: number,
+  end: number,
+): void {
+  const { outX, outY } = pieces;
+  const length = Math.hypot(bx - ax, by - ay);
+  const ux = (bx - ax) / length;
+  const uy = (by - ay) / length;
+  const [sx, sy] = start < 0 ? [ux, uy] : [-outX[start], -outY[start]];
+  const [ex, ey] = end < 0 ? [ux, uy] : [outX[end], outY[end]];
+  const atStart = start < 0 ? 0 : beyond;
+  const atEnd = end < 0 ? 0 : beyond;
+  const [px, py] = [ax - sx * atStart, ay - sy * atStart];
+  const [qx, qy] = [bx + ex * atEnd, by + ey * atEnd];
+  const corners = [
+    [px - sy * half, py + sx * half],
+    [qx - ey * half, qy + ex * half],
+    [qx + ey * half, qy - ex * half],
+    [px + sy * half, py - sx * half],
+  ] as const;
+  into.push({
+    lines: corners.map(([x, y], k): Line => [x, y, ...corners[(k + 1) % 4]]),
+    radius: 0,
+    corners,
+  });
+  if (start < 0) into.push(disc(ax, ay, half));
+  if (end < 0) into.push(disc(bx, by, half));
 }
 
 function disc(x: number, y: number, radius: number): Part {
@@ -161,15 +196,7 @@ function disc(x: number, y: number, radius: number): Part {
 }
 
 function gapOfParts(one: Part, two: Part): Closest {
-  let best: Closest | null = null;
-  for (const a of one.lines) {
-    for (const b of two.lines) {
-      const gap = closestPoints(a, b);
-      best = best === null ? gap : nearer(best, gap);
-    }
-  }
-  // Every part has a line.
-  const closest = best as Closest;
+  const closest = closestOf(one.lines, two.lines);
   if (contains(one, two.lines[0]) || contains(two, one.lines[0])) {
     return { ...closest, distanceMm: -closest.distanceMm - one.radius - two.radius };
   }
@@ -184,6 +211,18 @@ function gapOfParts(one: Part, two: Part): Closest {
     x2: x2 - ux * two.radius,
     y2: y2 - uy * two.radius,
   };
+}
+
+/** Of two lists that are not empty. */
+function closestOf(one: readonly Line[], two: readonly Line[]): Closest {
+  let best: Closest | null = null;
+  for (const a of one) {
+    for (const b of two) {
+      const gap = closestPoints(a, b);
+      best = best === null ? gap : nearer(best, gap);
+    }
+  }
+  return best as Closest;
 }
 
 function contains({ corners }: Part, [x, y]: Line): boolean {

@@ -222,8 +222,10 @@ function addThinStretches(
 ): void {
   const { chip } = context;
   const halves = pieces.half[i] + pieces.half[j];
-  // The relative slack of a limit, and rounding of coordinates where the limit is nought.
-  const withinMm = halves + limitMm * (1 - 1e-9) - (limitMm === 0 ? -1e-9 * halves : 0);
+  // The relative slack of a limit, rounding of coordinates where the limit is nought, and what curves may lie beside their
+  // pieces: a wall round a bend drawn exactly at the limit is not below it.
+  const withinMm =
+    halves + limitMm * (1 - 1e-9) - (limitMm === 0 ? -1e-9 * halves : 0) - pieces.bulge[i] - pieces.bulge[j];
   const flat = hasFlatEnd(chip, pieces, i) || hasFlatEnd(chip, pieces, j);
   if (!flat && distanceMm >= withinMm) return;
   if (distanceMm <= chip.joinWithinMm && crossesSquarely(pieces, i, j)) return;

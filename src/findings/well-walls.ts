@@ -1,3 +1,4 @@
+import { FINE_MM } from '../geometry/curve.ts';
 import { type Closest, type Line, stretchWithin } from './closest.ts';
 import type { FindingContext } from './context.ts';
 import { nearMisses } from './misses.ts';
@@ -38,13 +39,14 @@ export function findWellWalls(
     const r = port.radiusMm + widest;
     const close: { piece: number; gap: Closest; from: number; to: number }[] = [];
     for (const i of index.search(port.xMm - r, port.yMm - r, port.xMm + r, port.yMm + r)) {
-      const limit = limits[pieces.channel[i]] * (1 - 1e-9);
+      // A curve may lie beside its pieces: round a well exactly at the limit it is not below it.
+      const limit = limits[pieces.channel[i]] * (1 - 1e-9) - Math.min(pieces.bulge[i], FINE_MM);
       const gap = gapToHole(chip, pieces, i, port);
       if (gap.distanceMm >= limit) continue;
       const within = stretchWithin(
         lineOf(pieces, i),
         [port.xMm, port.yMm, port.xMm, port.yMm],
-        port.radiusMm + pieces.half[i] + limit,
+        port.radiusMm + pieces.half[i] + limit + pieces.bulge[i],
       ) ?? [0, 0];
       close.push({
         piece: i,

@@ -41,7 +41,15 @@ export function ellipseY(e: Ellipse, t: number): number {
   return e.cy + e.uy * Math.cos(t) + e.vy * Math.sin(t);
 }
 
-export function scaledCurve(curve: Curve, factor: number): Curve {
+/** The same for the curves of a row of pieces, null for those that are straight. */
+export function scaledCurves(
+  curves: readonly (Curve | null)[] | null,
+  factor: number,
+): readonly (Curve | null)[] | null {
+  return curves?.map((curve) => curve && scaledCurve(curve, factor)) ?? null;
+}
+
+function scaledCurve(curve: Curve, factor: number): Curve {
   if (curve.kind === 'cubic') {
     return { kind: 'cubic', points: curve.points.map((coordinate) => coordinate * factor) };
   }
@@ -90,7 +98,7 @@ export function directionAtEnd(curve: Curve, end: 'start' | 'end'): readonly [nu
   return null;
 }
 
-/** A stretch of a curve from the point before it to (x, y). */
+/** A straight stretch of a curve from the point before it to (x, y). */
 export interface FinePiece {
   readonly x: number;
   readonly y: number;

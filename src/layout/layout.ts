@@ -219,9 +219,13 @@ function toIgnored(shape: Shape, drawn: Drawn, laying: Laying, reason: string): 
 }
 
 function outlineOf(drawn: Drawn, flat: Flattened, stroked: boolean): Outline {
-  return { kind: 'outline', ...drawn, rings: flat.subpaths.map((subpath) => subpath.points), stroked };
+  return { kind: 'outline', ...drawn, ...ringsOf(flat), stroked };
 }
 
 function ignoredOf(drawn: Drawn, flat: Flattened, reason: string): Ignored {
-  return { kind: 'ignored', ...drawn, reason, rings: flat.subpaths.map((subpath) => subpath.points) };
+  return { kind: 'ignored', ...drawn, reason, ...ringsOf(flat) };
+}
+
+function ringsOf({ subpaths }: Flattened): Pick<Outline, 'rings' | 'ringCurves'> {
+  return { rings: subpaths.map(({ points }) => points), ringCurves: subpaths.map(({ curves }) => curves) };
 }

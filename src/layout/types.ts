@@ -50,6 +50,8 @@ export interface Hole extends Drawn {
 export interface Outline extends Drawn {
   readonly kind: 'outline';
   readonly rings: readonly Float64Array[];
+  /** The curves of each ring, as a centreline's; left out where all are straight. */
+  readonly ringCurves?: readonly (readonly (Curve | null)[] | null)[];
   readonly stroked: boolean;
 }
 
@@ -59,6 +61,8 @@ export interface Ignored extends Drawn {
   /** text, image, dashed stroke, fill … : the key in the count of ignored shapes. */
   readonly reason: string;
   readonly rings: readonly Float64Array[];
+  /** The curves of each ring, as a centreline's; left out where all are straight. */
+  readonly ringCurves?: readonly (readonly (Curve | null)[] | null)[];
 }
 
 export type LayoutItem = Stroke | Hole | Outline | Ignored;
