@@ -67,7 +67,8 @@ function scaledCurve(curve: Curve, factor: number): Curve {
 
 /**
  * How far the curve lies from its chord, at most. Exact for an arc of less than half a turn; for a cubic the bound
- * 3t(1 − t)² |d₁| + 3t²(1 − t) |d₂| ≤ ¾ max |d| by the distances d of its inner points from the chord.
+ * 3t(1 − t)² |d₁| + 3t²(1 − t) |d₂| ≤ ¾ max |d| by the distances d of its control points from the chord's line, and what
+ * they reach beyond its ends.
  */
 export function departure(curve: Curve): number {
   return curve.kind === 'arc' ? arcDeparture(curve) : cubicDeparture(curve.points);
@@ -113,7 +114,7 @@ export function finePieces(curve: Curve, tolerance: number): FinePiece[] {
   return pieces;
 }
 
-/** A departure falls with the square of the pieces, so a second round is seldom needed; a cusp ends here. */
+/** A departure falls about with the square of the pieces, so a second round is seldom needed; a cusp ends here. */
 const MAX_DEPTH = 12;
 
 /** No chip's arc needs more at once: a departure of a millimetre needs 160. */
@@ -126,7 +127,8 @@ function addFinePieces(into: FinePiece[], curve: Curve, tolerance: number, depth
     into.push({ x, y, departure: off });
     return;
   }
-  const count = Math.min(MAX_PARTS, Math.max(2, Math.ceil(Math.sqrt((off / tolerance) * (1 - 1e-9)))));
+  // A thousandth more, for a departure falls not quite with the square.
+  const count = Math.min(MAX_PARTS, Math.max(2, Math.ceil(1.001 * Math.sqrt(off / tolerance))));
   let rest = curve;
   for (let k = count; k > 1; k--) {
     const [part, next] = split(rest, 1 / k);
@@ -188,12 +190,16 @@ function cubicDeparture(p: readonly number[]): number {
   const dx = p[6] - p[0];
   const dy = p[7] - p[1];
   const chord = Math.hypot(dx, dy);
-  const reach = Math.max(Math.hypot(p[2] - p[0], p[3] - p[1]), Math.hypot(p[4] - p[6], p[5] - p[7]));
-  // A piece of a cusp: nowhere further from its ends than its control points.
-  if (chord <= reach) return reach;
-  const d1 = Math.abs(dx * (p[3] - p[1]) - dy * (p[2] - p[0]));
-  const d2 = Math.abs(dx * (p[5] - p[1]) - dy * (p[4] - p[0]));
-  return (0.75 * Math.max(d1, d2)) / chord;
+  if (chord === 0)
+    return Math.max(Math.hypot(p[2] - p[0], p[3] - p[1]), Math.hypot(p[4] - p[0], p[5] - p[1]));
+  let across = 0;
+  let beyond = 0;
+  for (const k of [2, 4]) {
+    const along = ((p[k] - p[0]) * dx + (p[k + 1] - p[1]) * dy) / chord;
+    across = Math.max(across, Math.abs(dx * (p[k + 1] - p[1]) - dy * (p[k] - p[0])) / chord);
+    beyond = Math.max(beyond, -along, along - chord);
+  }
+  return Math.hypot(0.75 * across, beyond);
 }
 
 function unit(x: number, y: number): readonly [number, number] | null {
