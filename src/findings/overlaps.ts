@@ -175,10 +175,14 @@ function toDoubleStroke(
   /** Positions on a of ends of either stroke that were carried on to the other: they meet in a node there. */
   function joinedEnds(): number[] {
     const slack = chip.joinWithinMm;
-    const { endJoinedTo } = network.trace;
+    const { endJoinedTo, endBundle } = network.trace;
+    const meets = (end: number, other: number): boolean =>
+      endJoinedTo[end] === other ||
+      (endBundle[end] >= 0 &&
+        [2 * other, 2 * other + 1].some((e) => e !== end && endBundle[e] === endBundle[end]));
     const isJoined = (c: number, other: number, position: number): boolean =>
-      (position <= slack && endJoinedTo[2 * c] === other) ||
-      (position >= pieces.centrelineLength[c] - slack && endJoinedTo[2 * c + 1] === other);
+      (position <= slack && meets(2 * c, other)) ||
+      (position >= pieces.centrelineLength[c] - slack && meets(2 * c + 1, other));
     return group.flatMap((along) => [
       ...(isJoined(a, b, along.from) || isJoined(b, a, along.otherFrom) ? [along.from] : []),
       ...(isJoined(a, b, along.to) || isJoined(b, a, along.otherTo) ? [along.to] : []),

@@ -1,7 +1,9 @@
 import type { Chip } from '../chip/types.ts';
+import type { Bundles } from './bundles.ts';
 import { type Draft, END_FREE, END_IN_PORT, Marks, NodeUnion, pointAt, toEnds } from './draft.ts';
 import { addDuctJoints, type DuctJoints } from './duct-joints.ts';
 import { joinEnds } from './ends.ts';
+import { isEqualDuct } from './equal-ducts.ts';
 import { JointTally } from './joint-types.ts';
 import { markMeetings } from './meetings.ts';
 import { nameNodes, nameReach, nameSegment } from './names.ts';
@@ -9,6 +11,7 @@ import { findNearPieces } from './near-pieces.ts';
 import { classifyNodes, type NodeJoints } from './node-joints.ts';
 import { type Kept, leaveOutEndPieces } from './overshoot.ts';
 import { type Arcs, type Reaches, toArcs, toReaches } from './reaches.ts';
+import { type Runs, toRuns } from './runs.ts';
 import { type Stops, stopsByNode, toStops } from './stops.ts';
 import { findTrims } from './trimming.ts';
 import { type EndFate, type Network, NODE_KINDS, type NodeKind } from './types.ts';
@@ -38,16 +41,17 @@ export function buildNetwork(chip: Chip): Network {
   });
   markMeetings(draft);
   markWells(draft);
-  joinEnds(draft);
+  const bundles = joinEnds(draft);
   const stops = toStops(draft);
-  const kept = leaveOutEndPieces(draft, stops);
+  const kept = leaveOutEndPieces(draft, stops, bundles);
   const arcs = toArcs(draft, stops, kept);
   const tally = new JointTally();
   const atNodes = classifyNodes(draft, arcs, tally);
   const { trims, strips } = findTrims(draft, stops, kept, atNodes.trimming);
   const reaches = toReaches(draft, arcs, trims);
-  const joints = toReachJoints(draft, reaches, atNodes, addDuctJoints(chip, reaches, tally));
-  return toNetwork(draft, stops, kept, arcs, reaches, strips, joints, tally);
+  const runs = toRuns(draft, reaches);
+  const joints = toReachJoints(draft, reaches, runs, atNodes, addDuctJoints(draft, reaches, runs, tally));
+  return toNetwork(draft, bundles, stops, kept, arcs, reaches, strips, joints, tally);
 }
 
 /** Strips nearer than this are of interest to some rule: the join slack, the least wall, or half the depth (slender walls). */
@@ -68,6 +72,7 @@ function nearnessMm(chip: Chip): number {
 
 function toNetwork(
   draft: Draft,
+  bundles: Bundles,
   stops: Stops,
   kept: Kept,
   arcs: Arcs,
@@ -90,7 +95,11 @@ function toNetwork(
   const changes = new Uint8Array(index.count);
   const meet = (node: number, channel: number): void => {
     if (firstDuct[node] < 0) firstDuct[node] = channel;
-    else if (firstDuct[node] !== channel && !isSameDuct(chip, firstDuct[node], channel)) changes[node] = 1;
+    else if (
+      firstDuct[node] !== channel &&
+      !isEqualDuct(chip.channels[firstDuct[node]], chip.channels[channel])
+    )
+      changes[node] = 1;
   };
   for (let r = 0; r < reaches.count; r++) {
     meet(reachFrom[r], reaches.channel[r]);
@@ -190,6 +199,7 @@ function toNetwork(
       endExtensionMm: draft.ends.extension,
       endLeftOutMm: kept.leftOutMm,
       endJoinedTo: draft.ends.joinedTo,
+      endBundle: bundles.of,
       strips,
       ...toPlaces(stops, byNode, index),
     };
@@ -208,6 +218,7 @@ interface ReachJoints {
 function toReachJoints(
   draft: Draft,
   reaches: Reaches,
+  runs: Runs,
   atNodes: NodeJoints,
   inDucts: DuctJoints,
 ): ReachJoints {
@@ -219,14 +230,7 @@ function toReachJoints(
     boundMm[r] += atNodes.sideBoundMm[2 * a] + atNodes.sideBoundMm[2 * a + 1];
   }
   if (draft.chip.joints === 'resolved') {
-    // Joints apart as the rules ask leave every duct most of its length. Should drawing and slack conspire, half of it is
-    // kept and the rest goes to the bound, for a duct without resistance has no flow.
-    for (let r = 0; r < reaches.count; r++) {
-      const least = -0.5 * reaches.resolvedMm[r];
-      if (jointMm[r] >= least) continue;
-      boundMm[r] += least - jointMm[r];
-      jointMm[r] = least;
-    }
+    for (let n = 0; n < runs.count; n++) keepHalf(reaches, runs, n, jointMm, boundMm);
     return { jointMm, boundMm };
   }
   return {
@@ -235,6 +239,39 @@ function toReachJoints(
       (bound, r) => bound + Math.abs(jointMm[r] + reaches.resolvedMm[r] - reaches.byRuleMm[r]),
     ),
   };
+}
+
+/**
+ * Joints apart as the rules ask leave every run most of its length; a reach of it that is shorter than what they take hands
+ * the rest on to the others, for a duct without resistance has no flow. Should drawing and slack conspire against the whole
+ * run, half of it is kept and the rest goes to the bound.
+ */
+function keepHalf(
+  { resolvedMm }: Reaches,
+  { first, reach }: Runs,
+  n: number,
+  jointMm: Float64Array,
+  boundMm: Float64Array,
+): void {
+  let lacking = 0;
+  let spare = 0;
+  for (let k = first[n]; k < first[n + 1]; k++) {
+    const room = jointMm[reach[k]] + 0.5 * resolvedMm[reach[k]];
+    if (room < 0) lacking -= room;
+    else spare += room;
+  }
+  if (lacking === 0) return;
+  const share = Math.min(1, lacking / spare);
+  for (let k = first[n]; k < first[n + 1]; k++) {
+    const r = reach[k];
+    const room = jointMm[r] + 0.5 * resolvedMm[r];
+    if (room >= 0) {
+      jointMm[r] -= share * room;
+      continue;
+    }
+    jointMm[r] = -0.5 * resolvedMm[r];
+    if (lacking > spare) boundMm[r] += (-room * (lacking - spare)) / lacking;
+  }
 }
 
 interface NodeNumbers {
@@ -265,12 +302,6 @@ function kindOf(port: number, degree: number, changes: boolean): NodeKind {
   if (port >= 0) return 'port';
   if (degree === 1) return 'end';
   return degree === 2 && changes ? 'step' : 'junction';
-}
-
-function isSameDuct(chip: Chip, a: number, b: number): boolean {
-  const one = chip.channels[a];
-  const two = chip.channels[b];
-  return one.ductWidthMm === two.ductWidthMm && one.depthMm === two.depthMm;
 }
 
 /** A port's node is at its centre, any other where the first arc that comes to it ends. */

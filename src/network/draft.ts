@@ -138,6 +138,11 @@ export function endPosition(draft: Draft, end: number): number {
     : draft.pieces.centrelineLength[c] + draft.ends.extension[end];
 }
 
+/** Position of an end on its centreline as drawn. */
+export function drawnPosition({ pieces }: Draft, end: number): number {
+  return (end & 1) === 0 ? 0 : pieces.centrelineLength[end >> 1];
+}
+
 /** The piece at an end. */
 export function endPiece(pieces: Pieces, end: number): number {
   const c = end >> 1;

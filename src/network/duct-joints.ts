@@ -1,8 +1,10 @@
 import type { Chip } from '../chip/types.ts';
 import { bendK, MITRE_MAX_TURN_RAD, mitreK, shallowMitreK } from '../physics/joints.ts';
+import type { Draft } from './draft.ts';
 import type { JointTally } from './joint-types.ts';
 import { ANGLE_TOLERANCE_RAD, APART_WIDTHS, turnBetween } from './node-joints.ts';
 import type { Reaches } from './reaches.ts';
+import type { Runs } from './runs.ts';
 
 /** The last computed radius of a bend, in widths. */
 const TIGHTEST_BEND_WIDTHS = 1;
@@ -14,130 +16,174 @@ export interface DuctJoints {
 }
 
 /**
- * Rule 8, `joints: resolved`, inside reaches: mitred corners by their turn, bends by radius and angle (chords of one curve
- * are a bend, not corners). Where two corners are nearer than 1.98 widths, or the turn is beyond 120°, or a bend tighter
- * than its width, nothing was computed: nothing is added and the bound says what that could be worth.
+ * Rule 8, `joints: resolved`, inside runs of equal duct: mitred corners by their turn, bends by radius and angle (chords of
+ * one curve are a bend, not corners). Where two corners are nearer than 1.98 widths, or the turn is beyond 120°, or a bend
+ * tighter than its width, nothing was computed: nothing is added and the bound says what that could be worth.
  *
  * Cost: linear in the segments.
  */
-export function addDuctJoints(chip: Chip, reaches: Reaches, tally: JointTally): DuctJoints {
+export function addDuctJoints(draft: Draft, reaches: Reaches, runs: Runs, tally: JointTally): DuctJoints {
   const joints = { reachMm: new Float64Array(reaches.count), reachBoundMm: new Float64Array(reaches.count) };
-  for (let r = 0; r < reaches.count; r++) {
-    const channel = chip.channels[reaches.channel[r]];
-    if (Number.isNaN(channel.depthMm)) continue;
-    addCorners(
-      reaches,
-      joints,
-      tally,
-      r,
-      channel.ductWidthMm,
-      channel.ductWidthMm / channel.depthMm,
-      chip.joinWithinMm,
-    );
-    addBends(reaches, joints, tally, r, channel.ductWidthMm, channel.ductWidthMm / channel.depthMm);
+  const run = new Run(reaches);
+  for (let n = 0; n < runs.count; n++) {
+    run.set(draft.chip, runs, n);
+    if (Number.isNaN(run.aspect)) continue;
+    addCorners(run, joints, tally, draft.slackMm);
+    addBends(run, joints, tally);
   }
   return joints;
 }
 
-function addCorners(
-  reaches: Reaches,
-  joints: DuctJoints,
-  tally: JointTally,
-  r: number,
-  width: number,
-  aspect: number,
-  slackMm: number,
-): void {
-  const { segments } = reaches;
-  const begin = reaches.firstSegment[r];
-  const end = reaches.firstSegment[r + 1];
-  const isLoop = reaches.from[r] === reaches.to[r] && isThroughLoop(reaches, r);
-  const turnAt = (segment: number, next: number): number =>
-    turnBetween(
-      segments.x2[segment] - segments.x1[segment],
-      segments.y2[segment] - segments.y1[segment],
-      segments.bendRadius[segment],
-      segments.x2[next] - segments.x1[next],
-      segments.y2[next] - segments.y1[next],
-      segments.bendRadius[next],
+/** The segments of one run in its own direction, k = 0 … count − 1. One object serves all runs. */
+class Run {
+  count = 0;
+  width = Number.NaN;
+  /** Width over depth; NaN where the depth is not known. */
+  aspect = Number.NaN;
+  isLoop = false;
+  private readonly reaches: Reaches;
+  /** 2·segment, + 1 where it is gone through backwards. */
+  private codes = new Int32Array(64);
+
+  constructor(reaches: Reaches) {
+    this.reaches = reaches;
+  }
+
+  set(chip: Chip, runs: Runs, n: number): void {
+    const { firstSegment, channel } = this.reaches;
+    const { ductWidthMm, depthMm } = chip.channels[channel[runs.reach[runs.first[n]]]];
+    this.width = ductWidthMm;
+    this.aspect = ductWidthMm / depthMm;
+    this.isLoop = runs.isLoop[n] === 1;
+    this.count = 0;
+    for (let k = runs.first[n]; k < runs.first[n + 1]; k++) {
+      const begin = firstSegment[runs.reach[k]];
+      const end = firstSegment[runs.reach[k] + 1];
+      if (this.count + end - begin > this.codes.length) this.grow(this.count + end - begin);
+      if (runs.reversed[k] === 0) for (let s = begin; s < end; s++) this.codes[this.count++] = 2 * s;
+      else for (let s = end - 1; s >= begin; s--) this.codes[this.count++] = 2 * s + 1;
+    }
+  }
+
+  private grow(size: number): void {
+    const codes = new Int32Array(2 * size);
+    codes.set(this.codes);
+    this.codes = codes;
+  }
+
+  reachOf(k: number): number {
+    return this.reaches.segments.reach[this.codes[k] >> 1];
+  }
+
+  dx(k: number): number {
+    const { x1, x2 } = this.reaches.segments;
+    const s = this.codes[k] >> 1;
+    return (this.codes[k] & 1) === 0 ? x2[s] - x1[s] : x1[s] - x2[s];
+  }
+
+  dy(k: number): number {
+    const { y1, y2 } = this.reaches.segments;
+    const s = this.codes[k] >> 1;
+    return (this.codes[k] & 1) === 0 ? y2[s] - y1[s] : y1[s] - y2[s];
+  }
+
+  startX(k: number): number {
+    const { x1, x2 } = this.reaches.segments;
+    return ((this.codes[k] & 1) === 0 ? x1 : x2)[this.codes[k] >> 1];
+  }
+
+  startY(k: number): number {
+    const { y1, y2 } = this.reaches.segments;
+    return ((this.codes[k] & 1) === 0 ? y1 : y2)[this.codes[k] >> 1];
+  }
+
+  /** Drawn length, mm. */
+  length(k: number): number {
+    return Math.hypot(this.dx(k), this.dy(k));
+  }
+
+  radius(k: number): number {
+    return this.reaches.segments.bendRadius[this.codes[k] >> 1];
+  }
+
+  /** Turn from segment k to the next, rad. */
+  turn(k: number): number {
+    return turnBetween(
+      this.dx(k),
+      this.dy(k),
+      this.radius(k),
+      this.dx(k + 1),
+      this.dy(k + 1),
+      this.radius(k + 1),
     );
+  }
+}
+
+function addCorners(run: Run, joints: DuctJoints, tally: JointTally, slackMm: number): void {
+  const { width, count, isLoop } = run;
   // A bend is a joint too, where it turns by more than the tolerance over the room that a corner needs. It has no meeting
   // point; it begins where a mitre's square would: half a width before.
   const isTight = (radius: number): boolean =>
     radius > 0 && (APART_WIDTHS - 0.5) * width > ANGLE_TOLERANCE_RAD * radius;
   let sinceJoint = 0;
-  /** Corner that waits for the distance to the next joint: its turn, the distance behind it and its place. */
-  let waiting: { turn: number; behind: number; segment: number } | null = null;
+  /** Corner that waits for the distance to the next joint: its turn, the distance behind it and the segment before it. */
+  let waiting: { turn: number; behind: number; k: number } | null = null;
   const settle = (ahead: number): void => {
     if (waiting === null) return;
-    addCorner(
-      joints,
-      tally,
-      r,
-      width,
-      aspect,
-      waiting.turn,
-      Math.min(waiting.behind, ahead),
-      segments.x2[waiting.segment],
-      segments.y2[waiting.segment],
-    );
+    addCorner(run, joints, tally, waiting.k, waiting.turn, Math.min(waiting.behind, ahead));
     waiting = null;
   };
   if (isLoop) sinceJoint = Number.POSITIVE_INFINITY;
-  for (let s = begin; s + 1 < end; s++) {
-    if (isTight(segments.bendRadius[s])) {
+  for (let k = 0; k + 1 < count; k++) {
+    if (isTight(run.radius(k))) {
       settle(sinceJoint + width / 2);
       sinceJoint = width / 2;
     } else {
-      sinceJoint += segmentLength(reaches, s);
+      sinceJoint += run.length(k);
     }
-    const turn = turnAt(s, s + 1);
+    const turn = run.turn(k);
     if (turn <= 1e-6) continue;
     // Needs no room and is not listed: its k is below 0.001.
     if (turn <= ANGLE_TOLERANCE_RAD) {
-      joints.reachMm[r] += mitreK(aspect, turn).k * width;
+      addAt(run, joints.reachMm, k, mitreK(run.aspect, turn).k * width);
       continue;
     }
-    // A vertex within the slack of the reach's end is the node there, drawn a hair off.
+    // A vertex within the slack of the run's end is the node there, drawn a hair off.
     if (waiting === null && sinceJoint <= slackMm) continue;
     settle(sinceJoint);
-    waiting = { turn, behind: sinceJoint, segment: s };
+    waiting = { turn, behind: sinceJoint, k };
     sinceJoint = 0;
   }
   if (isLoop) {
     settle(Number.POSITIVE_INFINITY);
     return;
   }
-  if (end === begin) return;
-  const rest =
-    sinceJoint + (isTight(segments.bendRadius[end - 1]) ? width / 2 : segmentLength(reaches, end - 1));
+  if (count === 0) return;
+  const rest = sinceJoint + (isTight(run.radius(count - 1)) ? width / 2 : run.length(count - 1));
   if (rest > slackMm) settle(rest);
 }
 
-/** A closed channel that no node interrupts. */
-function isThroughLoop(reaches: Reaches, r: number): boolean {
-  const { segments } = reaches;
-  const last = reaches.firstSegment[r + 1] - 1;
-  const first = reaches.firstSegment[r];
-  return segments.x2[last] === segments.x1[first] && segments.y2[last] === segments.y1[first];
+/** Adds to the reach of a corner between segment k and the next; at a seam half to either. */
+function addAt(run: Run, into: Float64Array, k: number, value: number): void {
+  into[run.reachOf(k)] += value / 2;
+  into[run.reachOf(k + 1)] += value / 2;
 }
 
 function addCorner(
+  run: Run,
   joints: DuctJoints,
   tally: JointTally,
-  r: number,
-  width: number,
-  aspect: number,
+  at: number,
   turn: number,
   room: number,
-  x: number,
-  y: number,
 ): void {
+  const { width, aspect } = run;
+  const [x, y] = [run.startX(at + 1), run.startY(at + 1)];
   const isComputed = turn <= MITRE_MAX_TURN_RAD + 1e-9;
   const { k, error } = mitreK(aspect, Math.min(turn, MITRE_MAX_TURN_RAD));
   if (isComputed && room >= APART_WIDTHS * width - 1e-6) {
-    joints.reachMm[r] += k * width;
-    joints.reachBoundMm[r] += error * width;
+    addAt(run, joints.reachMm, at, k * width);
+    addAt(run, joints.reachBoundMm, at, error * width);
     tally.add('mitred corner', k * width, error * width, x, y);
     return;
   }
@@ -145,86 +191,60 @@ function addCorner(
   // of the legs, most in the shallow limit, up to all that there is of the shorter one on either leg.
   const beyond = isComputed ? 0 : Math.min(Math.abs(shallowMitreK(turn)) * width, 2 * room);
   const bound = Math.max((Math.abs(k) + error) * width, beyond);
-  joints.reachBoundMm[r] += bound;
+  addAt(run, joints.reachBoundMm, at, bound);
   tally.add('corner not computed', 0, bound, x, y);
 }
 
-function addBends(
-  reaches: Reaches,
-  joints: DuctJoints,
-  tally: JointTally,
-  r: number,
-  width: number,
-  aspect: number,
-): void {
-  const { segments } = reaches;
-  const end = reaches.firstSegment[r + 1];
-  for (let s = reaches.firstSegment[r]; s < end; ) {
-    const next = segments.bendRadius[s] === 0 ? s + 1 : endOfBend(reaches, s, end);
-    if (segments.bendRadius[s] > 0) addBend(reaches, joints, tally, r, width, aspect, s, next);
-    s = next;
+function addBends(run: Run, joints: DuctJoints, tally: JointTally): void {
+  for (let k = 0; k < run.count; ) {
+    const next = run.radius(k) === 0 ? k + 1 : endOfBend(run, k);
+    if (run.radius(k) > 0) addBend(run, joints, tally, k, next);
+    k = next;
   }
 }
 
-/** First segment after the run of chords from s on that all turn the same way. */
-function endOfBend(reaches: Reaches, s: number, end: number): number {
-  const { bendRadius } = reaches.segments;
+/** First segment after the chords from k on that all turn the same way. */
+function endOfBend(run: Run, k: number): number {
   let side = 0;
-  let next = s + 1;
-  for (; next < end && bendRadius[next] > 0; next++) {
-    const turn = turnSide(reaches, next - 1);
+  let next = k + 1;
+  for (; next < run.count && run.radius(next) > 0; next++) {
+    const turn = turnSide(run, next - 1);
     if (side !== 0 && turn !== 0 && turn !== side) break;
     if (turn !== 0) side = turn;
   }
   return next;
 }
 
-function addBend(
-  reaches: Reaches,
-  joints: DuctJoints,
-  tally: JointTally,
-  r: number,
-  width: number,
-  aspect: number,
-  from: number,
-  to: number,
-): void {
-  const { segments } = reaches;
+function addBend(run: Run, joints: DuctJoints, tally: JointTally, from: number, to: number): void {
+  const { width, aspect } = run;
   let angle = 0;
-  let added = 0;
   let tightest = Number.POSITIVE_INFINITY;
-  for (let s = from; s < to; s++) {
-    const radius = segments.bendRadius[s];
-    const chordAngle = 2 * Math.asin(Math.min(1, segmentLength(reaches, s) / (2 * radius)));
-    angle += chordAngle;
-    tightest = Math.min(tightest, radius / width);
-    added += bendK(aspect, Math.max(radius / width, TIGHTEST_BEND_WIDTHS), chordAngle).k * width;
+  for (let k = from; k < to; k++) {
+    angle += chordAngle(run, k);
+    tightest = Math.min(tightest, run.radius(k) / width);
   }
-  const [x, y] = [segments.x1[from], segments.y1[from]];
-  if (tightest >= TIGHTEST_BEND_WIDTHS * (1 - 1e-6)) {
-    const bound = bendK(aspect, tightest, angle).error * width;
-    joints.reachMm[r] += added;
-    joints.reachBoundMm[r] += bound;
-    tally.add('bend', added, bound, x, y);
-    return;
-  }
+  const isComputed = tightest >= TIGHTEST_BEND_WIDTHS * (1 - 1e-6);
   // Tighter than its width: at worst it is a mitred corner of the same turn.
-  const { k, error } = mitreK(aspect, Math.min(angle, MITRE_MAX_TURN_RAD));
-  const bound = (Math.abs(k) + error) * width;
-  joints.reachBoundMm[r] += bound;
-  tally.add('bend not computed', 0, bound, x, y);
+  const mitre = mitreK(aspect, Math.min(angle, MITRE_MAX_TURN_RAD));
+  const bound = (isComputed ? bendK(aspect, tightest, angle).error : Math.abs(mitre.k) + mitre.error) * width;
+  let added = 0;
+  for (let k = from; k < to; k++) {
+    const share = chordAngle(run, k);
+    joints.reachBoundMm[run.reachOf(k)] += (bound * share) / angle;
+    if (!isComputed) continue;
+    const length = bendK(aspect, Math.max(run.radius(k) / width, TIGHTEST_BEND_WIDTHS), share).k * width;
+    joints.reachMm[run.reachOf(k)] += length;
+    added += length;
+  }
+  tally.add(isComputed ? 'bend' : 'bend not computed', added, bound, run.startX(from), run.startY(from));
+}
+
+/** The angle of the curve that a chord was cut from. */
+function chordAngle(run: Run, k: number): number {
+  return 2 * Math.asin(Math.min(1, run.length(k) / (2 * run.radius(k))));
 }
 
 /** Which way the curve turns after this segment: +1 or −1, 0 for straight on. */
-function turnSide(reaches: Reaches, s: number): number {
-  const { segments } = reaches;
-  const cross =
-    (segments.x2[s] - segments.x1[s]) * (segments.y2[s + 1] - segments.y1[s + 1]) -
-    (segments.y2[s] - segments.y1[s]) * (segments.x2[s + 1] - segments.x1[s + 1]);
-  return Math.sign(cross);
-}
-
-function segmentLength(reaches: Reaches, s: number): number {
-  const { segments } = reaches;
-  return Math.hypot(segments.x2[s] - segments.x1[s], segments.y2[s] - segments.y1[s]);
+function turnSide(run: Run, k: number): number {
+  return Math.sign(run.dx(k) * run.dy(k + 1) - run.dy(k) * run.dx(k + 1));
 }

@@ -1,6 +1,7 @@
 import { nearestParameter } from '../geometry/segment.ts';
 import { isInPieceStrip } from '../geometry/strip.ts';
-import { type Draft, END_FREE, END_JOINED, endPiece, endPosition } from './draft.ts';
+import { type Bundles, findBundles } from './bundles.ts';
+import { type Draft, drawnPosition, END_FREE, END_JOINED, endPiece, endPosition } from './draft.ts';
 import { reachInStrip, StripNeighbours } from './strips.ts';
 
 /**
@@ -9,15 +10,57 @@ import { reachInStrip, StripNeighbours } from './strips.ts';
  * the nearest point of it; of several strips, the one whose centreline is nearest. An end whose channel has already met
  * that centreline since it entered the strip has joined it there, and rule 4 looks at the piece beyond.
  *
+ * Ends within the slack of each other are one node (bundles.ts). The strips of its members are no candidates for each
+ * other: each member is carried on alone from there, unless a member's drawn stroke already reaches that centreline inside
+ * that strip. Nor is a strip that the duct itself goes on in within two widths, drawn as further strokes end to end.
+ *
  * Each end is judged on the drawing alone, so the order of the ends does not matter.
  */
-export function joinEnds(draft: Draft): void {
-  const met = meetingsByCentreline(draft);
-  const strips = new StripNeighbours(draft, (c) => draft.pieces.centrelineChannel[c]);
-  for (let c = 0; c < draft.pieces.centrelineCount; c++) {
-    if (draft.pieces.centrelineClosed[c] === 1) continue;
-    joinEnd(draft, 2 * c, met, strips);
-    joinEnd(draft, 2 * c + 1, met, strips);
+export function joinEnds(draft: Draft): Bundles {
+  const bundles = findBundles(draft.near, draft.ends, draft.slackMm);
+  const judge: EndJudge = {
+    draft,
+    bundles,
+    met: meetingsByCentreline(draft),
+    strips: new StripNeighbours(draft, (c) => draft.pieces.centrelineChannel[c]),
+  };
+  const free = freeEnds(draft);
+  // All fates are settled on the drawing before any is written down.
+  const goals = free.map((end) => goalOf(judge, end));
+  markBundles(draft, bundles);
+  free.forEach((end, k) => {
+    const goal = goals[k];
+    if (goal !== null) join(draft, end, goal);
+  });
+  return bundles;
+}
+
+interface EndJudge {
+  readonly draft: Draft;
+  readonly bundles: Bundles;
+  readonly met: Meetings;
+  readonly strips: StripNeighbours;
+}
+
+function freeEnds({ pieces, ends }: Draft): number[] {
+  const free: number[] = [];
+  for (let e = 0; e < 2 * pieces.centrelineCount; e++) {
+    if (pieces.centrelineClosed[e >> 1] === 0 && ends.state[e] === END_FREE) free.push(e);
+  }
+  return free;
+}
+
+/** The members of a bundle are one node, wherever each is carried on to from there. */
+function markBundles(draft: Draft, { of, first, member }: Bundles): void {
+  const { ends, marks, nodes } = draft;
+  for (let head = 0; head < of.length; head++) {
+    if (of[head] !== head) continue;
+    const node = nodes.add();
+    for (let k = first[head]; k < first[head + 1]; k++) {
+      const end = member[k];
+      ends.state[end] = END_JOINED;
+      marks.addMeeting(end >> 1, drawnPosition(draft, end), node);
+    }
   }
 }
 
@@ -26,8 +69,9 @@ const ROUNDING_MM = 1e-9;
 
 interface Candidate {
   readonly centreline: number;
-  piece: number;
-  distance: number;
+  /** The piece of it that is nearest to the end. */
+  readonly piece: number;
+  readonly distance: number;
 }
 
 /** For each centreline, the indices of the marks on it that are meetings; and each meeting's partner. */
@@ -47,46 +91,109 @@ function meetingsByCentreline(draft: Draft): Meetings {
   return { first, mark };
 }
 
-function joinEnd(draft: Draft, end: number, met: Meetings, strips: StripNeighbours): void {
-  const { ends, marks, nodes } = draft;
-  if (ends.state[end] !== END_FREE) return;
-  const c = end >> 1;
-  for (const candidate of candidatesOf(draft, end)) {
-    const last = lastMeeting(draft, end, candidate.centreline, met);
-    if (last !== null && hasStayedInside(draft, end, last, candidate.centreline, strips)) {
-      // Met to the last bit at the end itself: joined there. Met before: rule 4's, and no farther strip's.
-      if (Math.abs(endPosition(draft, end) - last) <= draft.slackMm) {
-        ends.state[end] = END_JOINED;
-        ends.joinedTo[end] = candidate.centreline;
-      }
-      return;
+/** Where an end goes: carried on to a centreline, or joined where its drawn stroke has met one. */
+type Goal =
+  | {
+      readonly kind: 'carried on';
+      readonly centreline: number;
+      readonly x: number;
+      readonly y: number;
+      readonly s: number;
     }
-    const place = carryOn(draft, end, candidate);
-    ends.state[end] = END_JOINED;
-    ends.joinedTo[end] = candidate.centreline;
-    const length = Math.hypot(place.x - ends.x[end], place.y - ends.y[end]);
-    if (length > ROUNDING_MM) {
-      ends.extension[end] = length;
-      ends.tipX[end] = place.x;
-      ends.tipY[end] = place.y;
-    }
-    const node = nodes.add();
-    marks.addMeeting(c, endPosition(draft, end), node);
-    marks.addMeeting(candidate.centreline, place.s, node);
-    return;
+  | { readonly kind: 'met'; readonly centreline: number };
+
+/** What rule 3 says of one end; null when it stays as it is. Looks at the drawing alone. */
+function goalOf(judge: EndJudge, end: number): Goal | null {
+  const { draft } = judge;
+  const candidate = candidatesOf(judge, end).find(({ centreline }) => !goesOnIn(judge, end, centreline));
+  if (candidate === undefined) return null;
+  const { centreline } = candidate;
+  const last = metInStrip(judge, end, centreline);
+  if (last !== null) {
+    // Met to the last bit at the end itself: joined there. Met before: rule 4's, and no farther strip's.
+    return Math.abs(endPosition(draft, end) - last) <= draft.slackMm ? { kind: 'met', centreline } : null;
   }
+  if (bundleReaches(judge, end, centreline)) return null;
+  return { kind: 'carried on', centreline, ...carryOn(draft, end, candidate) };
 }
 
-/** Strips that hold the end, nearest centreline first. */
-function candidatesOf(draft: Draft, end: number): Candidate[] {
+function join(draft: Draft, end: number, goal: Goal): void {
+  const { ends, marks, nodes } = draft;
+  ends.state[end] = END_JOINED;
+  ends.joinedTo[end] = goal.centreline;
+  if (goal.kind === 'met') return;
+  const length = Math.hypot(goal.x - ends.x[end], goal.y - ends.y[end]);
+  if (length > ROUNDING_MM) {
+    ends.extension[end] = length;
+    ends.tipX[end] = goal.x;
+    ends.tipY[end] = goal.y;
+  }
+  const node = nodes.add();
+  marks.addMeeting(end >> 1, endPosition(draft, end), node);
+  marks.addMeeting(goal.centreline, goal.s, node);
+}
+
+/** Whether the drawn stroke of another member of the end's bundle already reaches a centreline inside its strip. */
+function bundleReaches(judge: EndJudge, end: number, centreline: number): boolean {
+  return membersAt(judge.bundles, end).some(
+    (other) => other !== end && metInStrip(judge, other, centreline) !== null,
+  );
+}
+
+/**
+ * Whether strokes that join end to end lead from an end to an end of another centreline, or across it inside its strip,
+ * within two of its widths: then that is where the duct itself goes on, and no strip that the end ran into. It is the same
+ * duct as if it had been drawn in one stroke, which no end joins within two widths back along it.
+ */
+function goesOnIn(judge: EndJudge, end: number, centreline: number): boolean {
+  const { draft, bundles } = judge;
+  const { pieces } = draft;
+  const mostMm = 4 * pieces.half[pieces.firstPiece[centreline]];
+  const seen = new Set<number>([end]);
+  const open: { readonly from: number; readonly walkedMm: number }[] = [{ from: end, walkedMm: 0 }];
+  const enter = (at: number, walkedMm: number): void => {
+    for (const from of membersAt(bundles, at)) {
+      if (!seen.has(from)) open.push({ from, walkedMm });
+      seen.add(from);
+    }
+  };
+  enter(end, 0);
+  for (let k = 0; k < open.length && k < MOST_STROKES; k++) {
+    const { from, walkedMm } = open[k];
+    const length = pieces.centrelineLength[from >> 1];
+    if (walkedMm > 0 && metInStrip(judge, from, centreline) !== null) return true;
+    if (walkedMm + length > mostMm) continue;
+    if (membersAt(bundles, from ^ 1).some((e) => e >> 1 === centreline)) return true;
+    enter(from ^ 1, walkedMm + length);
+  }
+  return false;
+}
+
+/** More strokes within two widths are no drawing; bounds the time. */
+const MOST_STROKES = 256;
+
+/** The ends of the bundle that an end belongs to; none for an end that is alone. */
+function membersAt({ of, first, member }: Bundles, end: number): Int32Array {
+  return of[end] < 0 ? member.subarray(0, 0) : member.subarray(first[of[end]], first[of[end] + 1]);
+}
+
+/** Position at which the end's channel met a centreline since it entered that strip; null when it did not. */
+function metInStrip({ draft, met, strips }: EndJudge, end: number, centreline: number): number | null {
+  const last = lastMeeting(draft, end, centreline, met);
+  return last !== null && hasStayedInside(draft, end, last, centreline, strips) ? last : null;
+}
+
+/** The strips that hold the end, but those of its own bundle, nearest centreline first. */
+function candidatesOf({ draft, bundles }: EndJudge, end: number): Candidate[] {
   const { near, pieces, ends, slackMm } = draft;
   const own = endPiece(pieces, end);
-  const found: Candidate[] = [];
+  const nearest = new Map<number, Candidate>();
   for (let k = near.firstPair[own]; k < near.firstPair[own + 1]; k++) {
     const pair = near.pairOf[k];
     const other = near.pairA[pair] === own ? near.pairB[pair] : near.pairA[pair];
     if (!isInPieceStrip(pieces, other, ends.x[end], ends.y[end], slackMm, null)) continue;
     const c = pieces.centreline[other];
+    if (isInBundle(bundles, end, c)) continue;
     const t = nearestParameter(
       ends.x[end],
       ends.y[end],
@@ -103,14 +210,17 @@ function candidatesOf(draft: Draft, end: number): Candidate[] {
       ends.x[end] - (pieces.x1[other] + t * (pieces.x2[other] - pieces.x1[other])),
       ends.y[end] - (pieces.y1[other] + t * (pieces.y2[other] - pieces.y1[other])),
     );
-    const known = found.find((candidate) => candidate.centreline === c);
-    if (known === undefined) found.push({ centreline: c, piece: other, distance });
-    else if (distance < known.distance) {
-      known.piece = other;
-      known.distance = distance;
+    if (distance < (nearest.get(c)?.distance ?? Number.POSITIVE_INFINITY)) {
+      nearest.set(c, { centreline: c, piece: other, distance });
     }
   }
-  return found.sort((a, b) => a.distance - b.distance || a.centreline - b.centreline);
+  return [...nearest.values()].sort((a, b) => a.distance - b.distance || a.centreline - b.centreline);
+}
+
+/** Whether another end of a centreline stands at the same place. */
+function isInBundle({ around }: Bundles, end: number, centreline: number): boolean {
+  if (around[end] < 0) return false;
+  return [2 * centreline, 2 * centreline + 1].some((e) => e !== end && around[e] === around[end]);
 }
 
 /** Position on the end's centreline of its meeting with another centreline nearest to the end; null when they never met. */

@@ -1,7 +1,8 @@
 import type { Channel } from '../chip/types.ts';
 import { endsAtVertex, pieceAt } from '../geometry/pieces.ts';
-import { crossK, MITRE_MAX_TURN_RAD, mitreK, stepK, teeEqualK, teeIntoWideK } from '../physics/joints.ts';
+import { crossK, stepK, teeEqualK, teeIntoWideK } from '../physics/joints.ts';
 import { type Draft, pointAt } from './draft.ts';
+import { isEqualDuct, isEqualSize } from './equal-ducts.ts';
 import type { JointKind, JointTally } from './joint-types.ts';
 import { type Arcs, sidesByNode } from './reaches.ts';
 
@@ -31,8 +32,6 @@ export const ANGLE_TOLERANCE_RAD = (5 * Math.PI) / 180;
 export const APART_WIDTHS = 1.98;
 /** A dead end of this many widths behaves as closed. */
 const DEAD_END_WIDTHS = 3;
-/** Two drawn widths or depths that differ by less are equal. */
-const EQUAL = 1e-6;
 /**
  * Estimated bound of an end correction that was not computed, in widths of the narrowest duct, while no two arms are nearer
  * than a right angle: no computed one is off centreline counting by more up to W = 10w (a step to 10w: 0.614).
@@ -69,29 +68,39 @@ export function classifyNodes(draft: Draft, arcs: Arcs, tally: JointTally): Node
   return joints;
 }
 
-/** Two arms of one channel: an inner point of a reach, where duct-joints.ts looks for a corner. */
+/** Two arms of one duct: an inner point of a reach or a seam (rule 3), where duct-joints.ts looks for a corner. */
 function isThrough(arms: readonly Arm[]): boolean {
-  return arms.length === 2 && arms[0].channel === arms[1].channel;
+  return arms.length === 2 && isEqualDuct(arms[0].channel, arms[1].channel);
 }
 
-/** Scratch points of toArm, which is asked for every arm of the chip. */
+/** Scratch points of firstStep, which is asked for every arm of the chip. */
 const HERE = { x: 0, y: 0 };
 const THERE = { x: 0, y: 0 };
 
 function toArm(draft: Draft, arcs: Arcs, side: number): Arm {
+  const [dx, dy] = firstStep(draft, arcs, side);
+  const length = Math.hypot(dx, dy);
+  return {
+    side,
+    channel: draft.chip.channels[draft.pieces.centrelineChannel[arcs.centreline[side >> 1]]],
+    dx: dx / length,
+    dy: dy / length,
+  };
+}
+
+/** From a side of an arc to its next vertex, away from the node; and the bend radius there, 0 where it is straight. */
+function firstStep(draft: Draft, arcs: Arcs, side: number): readonly [number, number, number] {
   const arc = side >> 1;
   const c = arcs.centreline[arc];
   const atFrom = (side & 1) === 0;
   const position = atFrom ? arcs.from[arc] : arcs.to[arc];
+  const vertex = nextVertex(draft, arcs, arc, position, atFrom);
   pointAt(draft, c, position, HERE);
-  pointAt(draft, c, nextVertex(draft, arcs, arc, position, atFrom), THERE);
-  const length = Math.hypot(THERE.x - HERE.x, THERE.y - HERE.y);
-  return {
-    side,
-    channel: draft.chip.channels[draft.pieces.centrelineChannel[c]],
-    dx: (THERE.x - HERE.x) / length,
-    dy: (THERE.y - HERE.y) / length,
-  };
+  pointAt(draft, c, vertex, THERE);
+  const middle = (position + vertex) / 2;
+  const isDrawn = middle >= 0 && middle <= draft.pieces.centrelineLength[c];
+  const radius = isDrawn ? draft.pieces.bendRadius[pieceAt(draft.pieces, c, middle)] : 0;
+  return [THERE.x - HERE.x, THERE.y - HERE.y, radius];
 }
 
 /**
@@ -171,7 +180,7 @@ function classify(
       bound = Math.max(bound, boundMm);
     }
     joints.trimming[node] = found.trimming;
-    if (found.kind !== null) tally.add(found.kind, added, bound, at.x, at.y);
+    tally.add(found.kind, added, bound, at.x, at.y);
     return;
   }
   const bound = unknownBound(arms);
@@ -187,8 +196,7 @@ function classify(
 }
 
 function unknownKind(arms: readonly Arm[]): JointKind {
-  if (arms.length !== 2) return 'junction not computed';
-  return isEqualDuct(arms[0].channel, arms[1].channel) ? 'corner not computed' : 'step not computed';
+  return arms.length === 2 ? 'step not computed' : 'junction not computed';
 }
 
 /**
@@ -223,8 +231,7 @@ interface Part {
 }
 
 interface Computed {
-  /** null: a joint that adds nothing (straight on in an equal duct). */
-  readonly kind: JointKind | null;
+  readonly kind: JointKind;
   readonly trimming: number;
   readonly parts: readonly Part[];
 }
@@ -241,22 +248,11 @@ function toPart(arm: Arm, k: number, error: number, widthMm: number, wallMm = 0)
   };
 }
 
-/** A corner of two strokes of equal ducts, or a collinear step in width. */
+/** A collinear step in width. */
 function twoArms(arms: readonly Arm[]): Computed | null {
   const [one, two] = arms;
   const turn = Math.PI - angleBetween(one, two);
-  if (isEqualDuct(one.channel, two.channel)) {
-    if (turn > MITRE_MAX_TURN_RAD + 1e-9) return null;
-    const width = one.channel.ductWidthMm;
-    const { k, error } = mitreK(width / one.channel.depthMm, turn);
-    const parts = arms.map((arm) => ({
-      ...toPart(arm, k / 2, error / 2, width),
-      // A vertex on a nearly straight line is no joint that needs room.
-      ...(turn <= ANGLE_TOLERANCE_RAD ? { apartMm: 0 } : {}),
-    }));
-    return { kind: turn <= ANGLE_TOLERANCE_RAD ? null : 'mitred corner', trimming: TRIM_NOTHING, parts };
-  }
-  if (!isEqual(one.channel.depthMm, two.channel.depthMm) || turn > ANGLE_TOLERANCE_RAD) return null;
+  if (!isEqualSize(one.channel.depthMm, two.channel.depthMm) || turn > ANGLE_TOLERANCE_RAD) return null;
   const [narrow, wide] = one.channel.ductWidthMm <= two.channel.ductWidthMm ? [one, two] : [two, one];
   const width = narrow.channel.ductWidthMm;
   const { k, error } = stepK(width / narrow.channel.depthMm, wide.channel.ductWidthMm / width);
@@ -270,8 +266,8 @@ function twoArms(arms: readonly Arm[]): Computed | null {
 /** A T: a main straight through and a side at right angles, no wider than the main. */
 function threeArms(arms: readonly Arm[]): Computed | null {
   const [mainA, mainB, side] = asTee(arms);
-  if (!arms.every(({ channel }) => isEqual(channel.depthMm, arms[0].channel.depthMm))) return null;
-  if (!isEqual(mainA.channel.ductWidthMm, mainB.channel.ductWidthMm)) return null;
+  if (!arms.every(({ channel }) => isEqualSize(channel.depthMm, arms[0].channel.depthMm))) return null;
+  if (!isEqualSize(mainA.channel.ductWidthMm, mainB.channel.ductWidthMm)) return null;
   if (Math.PI - angleBetween(mainA, mainB) > ANGLE_TOLERANCE_RAD) return null;
   for (const main of [mainA, mainB]) {
     if (Math.abs(angleBetween(main, side) - Math.PI / 2) > ANGLE_TOLERANCE_RAD) return null;
@@ -279,7 +275,7 @@ function threeArms(arms: readonly Arm[]): Computed | null {
   const width = side.channel.ductWidthMm;
   const mainWidth = mainA.channel.ductWidthMm;
   const aspect = width / side.channel.depthMm;
-  if (isEqual(width, mainWidth)) {
+  if (isEqualSize(width, mainWidth)) {
     const { main, side: k, error } = teeEqualK(aspect);
     return {
       kind: 'T of equal ducts',
@@ -338,14 +334,6 @@ function angleBetween(a: Arm, b: Arm): number {
   return Math.atan2(Math.abs(a.dx * b.dy - a.dy * b.dx), a.dx * b.dx + a.dy * b.dy);
 }
 
-function isEqual(a: number, b: number): boolean {
-  return Math.abs(a - b) <= EQUAL * Math.max(a, b);
-}
-
-function isEqualDuct(a: Channel, b: Channel): boolean {
-  return isEqual(a.ductWidthMm, b.ductWidthMm) && isEqual(a.depthMm, b.depthMm);
-}
-
 /** How far each arm runs straight on before the next joint. */
 class RunLengths {
   readonly arcs: Arcs;
@@ -360,25 +348,53 @@ class RunLengths {
 
   /**
    * Whether the arm is free of other joints for `apartMm` beyond `wallMm` from the node: of nodes where channels meet,
-   * rims and corners; and, where it ends dead, for three widths.
+   * rims and corners; and, where it ends dead, for three widths. Seams are walked through.
    */
   isLongEnough(side: number, apartMm: number, wallMm: number): boolean {
     const { draft, arcs, sides } = this;
-    const arc = side >> 1;
-    const forward = (side & 1) === 0;
-    const width = draft.chip.channels[draft.pieces.centrelineChannel[arcs.centreline[arc]]].ductWidthMm;
+    const { ductWidthMm: width } =
+      draft.chip.channels[draft.pieces.centrelineChannel[arcs.centreline[side >> 1]]];
+    const { slackMm } = draft;
     const need = wallMm + apartMm;
-    const length = arcs.to[arc] - arcs.from[arc];
-    const corner = this.distanceToCorner(arc, forward, Math.max(need, wallMm + DEAD_END_WIDTHS * width));
-    if (corner < need - draft.slackMm) return false;
+    const deadNeed = Math.max(need, wallMm + DEAD_END_WIDTHS * width);
     // A bend has no meeting point; it begins where a mitre's square would: half a width before.
-    if (this.turnOfBends(arc, forward, need - width / 2 - draft.slackMm) > ANGLE_TOLERANCE_RAD) return false;
-    const other = forward ? arcs.nodeTo[arc] : arcs.nodeFrom[arc];
-    if (other < draft.portCount) return length >= need - draft.slackMm;
-    const degree = sides.first[other + 1] - sides.first[other];
-    if (degree === 1) return length >= Math.max(need, wallMm + DEAD_END_WIDTHS * width) - draft.slackMm;
-    // Through a place where one channel only goes on, the next stretch is not looked at: drawn in several subpaths.
-    return length >= need - draft.slackMm;
+    let turnLeft = ANGLE_TOLERANCE_RAD;
+    let walked = 0;
+    for (let at = side; ; ) {
+      const arc = at >> 1;
+      const forward = (at & 1) === 0;
+      const corner = walked + this.distanceToCorner(arc, forward, deadNeed - walked);
+      if (corner < need - slackMm) return false;
+      turnLeft -= this.turnOfBends(arc, forward, need - width / 2 - slackMm - walked);
+      if (turnLeft < 0) return false;
+      walked += arcs.to[arc] - arcs.from[arc];
+      if (walked >= deadNeed - slackMm) return true;
+      const node = forward ? arcs.nodeTo[arc] : arcs.nodeFrom[arc];
+      const degree = sides.first[node + 1] - sides.first[node];
+      if (node >= draft.portCount && degree === 1) return false;
+      const next = node < draft.portCount || degree !== 2 ? -1 : this.seamSide(node, at ^ 1);
+      if (next < 0 || next === side) return walked >= need - slackMm;
+      const isCorner = walked > slackMm && this.turnAtSeam(at ^ 1, next) > ANGLE_TOLERANCE_RAD;
+      if (isCorner) return walked >= need - slackMm;
+      at = next;
+    }
+  }
+
+  /** The side in which the duct goes on at a node of two, −1 where it changes there. */
+  private seamSide(node: number, side: number): number {
+    const { draft, arcs, sides } = this;
+    const [one, two] = [sides.side[sides.first[node]], sides.side[sides.first[node] + 1]];
+    const other = one === side ? two : one;
+    const channelOf = (s: number) =>
+      draft.chip.channels[draft.pieces.centrelineChannel[arcs.centreline[s >> 1]]];
+    return isEqualDuct(channelOf(side), channelOf(other)) ? other : -1;
+  }
+
+  /** By how much the duct turns where one side goes on in another, without what belongs to curves. */
+  private turnAtSeam(side: number, next: number): number {
+    const [ux, uy, radius] = firstStep(this.draft, this.arcs, side);
+    const [vx, vy, nextRadius] = firstStep(this.draft, this.arcs, next);
+    return turnBetween(-ux, -uy, radius, vx, vy, nextRadius);
   }
 
   /** By how much curves turn the arm within a distance of its node. */

@@ -1,7 +1,9 @@
 import { pieceAt } from '../geometry/pieces.ts';
 import { distanceToSegment, nearestParameter } from '../geometry/segment.ts';
 import { isInPieceStrip } from '../geometry/strip.ts';
-import { type Draft, END_FREE, END_JOINED, endPiece, endPosition, pointAt } from './draft.ts';
+import type { Bundles } from './bundles.ts';
+import { type Draft, drawnPosition, END_FREE, END_JOINED, endPiece, endPosition, pointAt } from './draft.ts';
+import { isEqualSize } from './equal-ducts.ts';
 import { type NodeStops, type Stops, stopsByNode } from './stops.ts';
 
 /** The part of each centreline that is kept, by position; and what was left out at each end (2c, 2c + 1), mm. */
@@ -27,7 +29,7 @@ const ALONG_RAD = (15 * Math.PI) / 180;
  * so, the narrower channel's, of equal ones the later drawn); so is a stub beyond a rim no longer than the larger of its
  * width and the port's radius.
  */
-export function leaveOutEndPieces(draft: Draft, stops: Stops): Kept {
+export function leaveOutEndPieces(draft: Draft, stops: Stops, bundles: Bundles): Kept {
   const { pieces } = draft;
   const n = pieces.centrelineCount;
   const kept = {
@@ -45,7 +47,7 @@ export function leaveOutEndPieces(draft: Draft, stops: Stops): Kept {
   for (let c = 0; c < n; c++) {
     if (pieces.centrelineClosed[c] === 1 || stops.firstStop[c] === stops.firstStop[c + 1]) continue;
     for (const end of [2 * c, 2 * c + 1]) {
-      const cut = findCut(draft, stops, byNode, end);
+      const cut = findCut(draft, stops, byNode, bundles, end);
       if (cut === null) continue;
       kept.leftOutMm[end] = Math.abs(endPosition(draft, end) - cut.position);
       kept.leftOutBy[end] = cut.why;
@@ -61,8 +63,8 @@ interface Cut {
   readonly why: LeftOut;
 }
 
-function findCut(draft: Draft, stops: Stops, byNode: NodeStops, end: number): Cut | null {
-  if (draft.ends.state[end] === END_JOINED) return findOverlap(draft, stops, byNode, end);
+function findCut(draft: Draft, stops: Stops, byNode: NodeStops, bundles: Bundles, end: number): Cut | null {
+  if (draft.ends.state[end] === END_JOINED) return findOverlapCut(draft, stops, byNode, bundles, end);
   if (draft.ends.state[end] === END_FREE) return findDeadPiece(draft, stops, byNode, end);
   return null;
 }
@@ -115,20 +117,43 @@ function isFarBack(draft: Draft, end: number, piece: number): boolean {
   return along > 4 * pieces.half[piece];
 }
 
-/** The end piece of a joined end, back to the last join with the same channel, when it runs along that channel. */
-function findOverlap(draft: Draft, stops: Stops, byNode: NodeStops, end: number): Cut | null {
-  const { pieces, ends } = draft;
+/** The end piece of a joined end that runs along the channel it joined, or along one that ends at the same place. */
+function findOverlapCut(
+  draft: Draft,
+  stops: Stops,
+  byNode: NodeStops,
+  { of, first, member }: Bundles,
+  end: number,
+): Cut | null {
+  const { ends } = draft;
+  const twin = twinOf(draft, end);
+  if (twin >= 0) return findTwinCut(draft, stops, end, twin);
+  const cut = findOverlap(draft, stops, byNode, end, endPosition(draft, end), ends.joinedTo[end]);
+  if (cut !== null || of[end] < 0) return cut;
+  for (let k = first[of[end]]; k < first[of[end] + 1]; k++) {
+    const along = findOverlap(draft, stops, byNode, end, drawnPosition(draft, end), member[k] >> 1);
+    if (along !== null) return along;
+  }
+  return null;
+}
+
+/** The end piece from a position back to the last join with the same channel, when it runs along that channel. */
+function findOverlap(
+  draft: Draft,
+  stops: Stops,
+  byNode: NodeStops,
+  end: number,
+  from: number,
+  other: number,
+): Cut | null {
+  const { pieces } = draft;
   const c = end >> 1;
-  const other = ends.joinedTo[end];
   if (other < 0 || other === c) return null;
   const otherChannel = pieces.centrelineChannel[other];
   const width = 2 * pieces.half[endPiece(pieces, end)];
   const otherWidth = 2 * pieces.half[pieces.firstPiece[other]];
   const limit = 2 * Math.max(width, otherWidth) + draft.slackMm;
   const atStart = (end & 1) === 0;
-  const from = endPosition(draft, end);
-  const twin = twinOf(draft, end);
-  if (twin >= 0) return findTwinCut(draft, stops, end, twin);
   const outermost = atStart ? stops.firstStop[c] : stops.firstStop[c + 1] - 1;
   const step = atStart ? 1 : -1;
   for (let k = outermost + step; k >= stops.firstStop[c] && k < stops.firstStop[c + 1]; k += step) {
@@ -151,7 +176,7 @@ function findOverlap(draft: Draft, stops: Stops, byNode: NodeStops, end: number)
       // Two end pieces overlap: only the narrower channel's, of equal ones the later drawn, is left out.
       const channel = pieces.centrelineChannel[c];
       const isLater = channel > otherChannel || (channel === otherChannel && c > other);
-      if (width > otherWidth || (width === otherWidth && !isLater)) return null;
+      if (isEqualSize(width, otherWidth) ? !isLater : width > otherWidth) return null;
     }
     return { position, why: 'overlap' };
   }
@@ -179,9 +204,10 @@ function twinOf(draft: Draft, end: number): number {
 function findTwinCut(draft: Draft, stops: Stops, end: number, twin: number): Cut | null {
   const { pieces, ends } = draft;
   const [c, other] = [end >> 1, twin >> 1];
-  const wider = pieces.half[endPiece(pieces, end)] - pieces.half[endPiece(pieces, twin)];
-  if (wider > 0 || (wider === 0 && c < other)) return null;
-  const drawn = (end & 1) === 0 ? 0 : pieces.centrelineLength[c];
+  const own = pieces.half[endPiece(pieces, end)];
+  const its = pieces.half[endPiece(pieces, twin)];
+  if (isEqualSize(own, its) ? c < other : own > its) return null;
+  const drawn = drawnPosition(draft, end);
   for (let k = stops.firstStop[c]; k < stops.firstStop[c + 1]; k++) {
     const isAtTip = Math.abs(stops.from[k] - drawn) >= ends.extension[end] - ROUNDING_MM;
     if (!isAtTip && Math.abs(stops.from[k] - drawn) <= draft.slackMm) {

@@ -1,6 +1,7 @@
 import { pieceAt } from '../geometry/pieces.ts';
 import type { StripEnds } from '../geometry/strip.ts';
 import type { Draft } from './draft.ts';
+import { isEqualDuct, isEqualSize } from './equal-ducts.ts';
 import { KeptStrips } from './kept-strips.ts';
 import { TRIM_BY_RULE, TRIM_TO_WALL } from './node-joints.ts';
 import type { Kept } from './overshoot.ts';
@@ -163,7 +164,7 @@ function allEqual(draft: Draft, stops: Stops, byNode: NodeStops, begin: number, 
   const first = channelAt(draft, stops, byNode.stop[begin]);
   for (let m = begin + 1; m < end; m++) {
     const other = channelAt(draft, stops, byNode.stop[m]);
-    if (other !== first && !isEqualDuct(draft, other, first)) return false;
+    if (other !== first && !isEqualDuct(draft.chip.channels[other], draft.chip.channels[first])) return false;
   }
   return true;
 }
@@ -172,23 +173,16 @@ function channelAt(draft: Draft, stops: Stops, stop: number): number {
   return draft.pieces.centrelineChannel[stops.centreline[stop]];
 }
 
-function isEqualDuct(draft: Draft, a: number, b: number): boolean {
-  const one = draft.chip.channels[a];
-  const two = draft.chip.channels[b];
-  return (
-    one.ductWidthMm === two.ductWidthMm &&
-    (one.depthMm === two.depthMm || (Number.isNaN(one.depthMm) && Number.isNaN(two.depthMm)))
-  );
-}
-
 /** min(1, w/W) · min(1, h/H)³; a depth that is not known counts as equal. */
 function trimFactor(draft: Draft, c: number, group: number): number {
   const own = draft.chip.channels[draft.pieces.centrelineChannel[c]];
   const other = draft.chip.channels[draft.pieces.centrelineChannel[group]];
-  const width = Math.min(1, own.ductWidthMm / other.ductWidthMm);
-  const depth = Math.min(1, own.depthMm / other.depthMm);
-  const factor = (Number.isNaN(width) ? 1 : width) * (Number.isNaN(depth) ? 1 : depth ** 3);
-  return factor;
+  return shareOf(own.ductWidthMm, other.ductWidthMm) * shareOf(own.depthMm, other.depthMm) ** 3;
+}
+
+/** min(1, a/b); 1 where the two are equal or one is not known. */
+function shareOf(a: number, b: number): number {
+  return Number.isNaN(a / b) || isEqualSize(a, b) ? 1 : Math.min(1, a / b);
 }
 
 interface UnitedStrips {
@@ -220,15 +214,17 @@ function uniteEqualStrips(draft: Draft, stops: Stops, kept: Kept, byNode: NodeSt
     const begin = byNode.first[node];
     const end = byNode.first[node + 1];
     if (end - begin < 2 || countEnds(draft, stops, kept, byNode, begin, end) < 2) continue;
-    const heads = new Map<string, number>();
+    const heads: number[] = [];
     for (let m = begin; m < end; m++) {
       const e = endAtStop(draft, stops, kept, byNode.stop[m]);
       if (e < 0) continue;
       const channel = draft.chip.channels[pieces.centrelineChannel[e >> 1]];
-      const key = `${channel.ductWidthMm} ${channel.depthMm} ${channel.plane}`;
-      const head = heads.get(key);
+      const head = heads.find((h) => {
+        const other = draft.chip.channels[pieces.centrelineChannel[h >> 1]];
+        return other.plane === channel.plane && isEqualDuct(other, channel);
+      });
       if (head === undefined) {
-        heads.set(key, e);
+        heads.push(e);
         continue;
       }
       // Of three equal ends none goes on in just one other.

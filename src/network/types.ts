@@ -101,6 +101,8 @@ export interface NetworkTrace {
   readonly endLeftOutMm: Float64Array;
   /** Centreline that the end joined by rule 3, −1 for none. */
   readonly endJoinedTo: Int32Array;
+  /** First end of the bundle of ends at one place that the end belongs to (rule 3), −1 for none. */
+  readonly endBundle: Int32Array;
   /** Seams between equal strips that meet end to end (rule 5). */
   readonly strips: StripEnds;
   /** Places of nodes on centrelines: columns sorted by node; a well is a stretch from … to. */

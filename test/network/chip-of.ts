@@ -8,6 +8,8 @@ export interface ChannelSpec {
   readonly closed?: boolean;
   /** One or more centrelines, each x0 y0 x1 y1 … in mm. */
   readonly lines: readonly (readonly number[])[];
+  /** Bend radius of each piece of each line, mm; straight unless given. */
+  readonly radii?: readonly (readonly number[])[];
 }
 
 export interface PortSpec {
@@ -87,10 +89,10 @@ function toChannel(spec: ChannelSpec, ordinal: number, depths: readonly string[]
     depthOrigin: 'run sheet',
     profile: 'rectangle',
     linecap: 'butt',
-    centrelines: spec.lines.map((line) => ({
+    centrelines: spec.lines.map((line, k) => ({
       points: Float64Array.from(line),
       closed: spec.closed ?? false,
-      bendRadius: new Float64Array(line.length / 2 - 1),
+      bendRadius: Float64Array.from(spec.radii?.[k] ?? new Array(line.length / 2 - 1).fill(0)),
       curves: null,
     })),
     disguises: [],

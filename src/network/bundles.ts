@@ -1,0 +1,150 @@
+import type { Nearness } from '../geometry/near.ts';
+import type { Pieces } from '../geometry/pieces.ts';
+import { type CentrelineEnds, END_FREE, endPiece, NodeUnion } from './draft.ts';
+
+/**
+ * Rule 3, bundles: ends of one plane within the slack of each other, chains too. Columns over the ends (2c the start of
+ * centreline c, 2c + 1 its last point).
+ */
+export interface Bundles {
+  /** The first end of the bundle that the end belongs to; −1 where it is alone. */
+  readonly of: Int32Array;
+  /**
+   * The same over strokes shorter than the slack: such a stroke keeps its two ends apart (rule 2: no chain of places goes
+   * through it), so that a curve drawn as many of them keeps its length; but none of the strokes that end there is joined
+   * over another way than end to end.
+   */
+  readonly around: Int32Array;
+  /** Ends of the bundle whose first end is e: member[first[e]] … member[first[e + 1] − 1]; none for any other end. */
+  readonly first: Int32Array;
+  readonly member: Int32Array;
+}
+
+/**
+ * Finds the bundles among ends that no port has taken. Cost: linear in the near pairs; where strokes shorter than the slack
+ * end, each pair of ends there is held against those strokes.
+ */
+export function findBundles(near: Nearness, ends: CentrelineEnds, slackMm: number): Bundles {
+  const links = linksOf(near, ends, slackMm);
+  const around = unite(ends.x.length, links);
+  const short = shortStrokesAt(near.pieces, links, slackMm);
+  const of =
+    short.size === 0
+      ? around
+      : unite(
+          ends.x.length,
+          links.filter(([a, b]) => !isAcrossShortStroke(ends, short, a, b, slackMm)),
+        );
+  return { of, around, ...membersOf(of) };
+}
+
+type Link = readonly [number, number];
+
+/** Pairs of free ends within the slack of each other. */
+function linksOf(
+  { pieces, pairA, pairB, pairCount, pairDistance }: Nearness,
+  ends: CentrelineEnds,
+  slackMm: number,
+): Link[] {
+  const links: Link[] = [];
+  const link = (a: number, b: number): void => {
+    const apart = Math.hypot(ends.x[a] - ends.x[b], ends.y[a] - ends.y[b]);
+    if (ends.state[a] === END_FREE && ends.state[b] === END_FREE && apart <= slackMm) links.push([a, b]);
+  };
+  for (let k = 0; k < pairCount; k++) {
+    if (pairDistance[k] > slackMm) continue;
+    const a = endsOfPiece(pieces, pairA[k]);
+    if (a.length === 0) continue;
+    const b = endsOfPiece(pieces, pairB[k]);
+    for (const one of a) for (const two of b) link(one, two);
+  }
+  return links;
+}
+
+const NO_ENDS: readonly number[] = [];
+
+function endsOfPiece(pieces: Pieces, piece: number): readonly number[] {
+  const c = pieces.centreline[piece];
+  if (pieces.centrelineClosed[c] === 1) return NO_ENDS;
+  const isFirst = piece === endPiece(pieces, 2 * c);
+  const isLast = piece === endPiece(pieces, 2 * c + 1);
+  if (isFirst) return isLast ? [2 * c, 2 * c + 1] : [2 * c];
+  return isLast ? [2 * c + 1] : NO_ENDS;
+}
+
+/** The smallest end of each set that the links make; −1 for an end without a link. */
+function unite(count: number, links: readonly Link[]): Int32Array {
+  const sets = new NodeUnion();
+  const at = new Map<number, number>();
+  const ends: number[] = [];
+  const setOf = (end: number): number => {
+    let set = at.get(end);
+    if (set === undefined) {
+      set = sets.add();
+      at.set(end, set);
+      ends.push(end);
+    }
+    return set;
+  };
+  for (const [a, b] of links) sets.unite(setOf(a), setOf(b));
+  const least = new Map<number, number>();
+  for (const [set, end] of ends.entries()) {
+    const root = sets.find(set);
+    least.set(root, Math.min(end, least.get(root) ?? end));
+  }
+  const of = new Int32Array(count).fill(-1);
+  for (const [set, end] of ends.entries()) of[end] = least.get(sets.find(set)) ?? end;
+  return of;
+}
+
+/** For each end, the ends linked with it (and itself) that belong to strokes shorter than the slack. */
+function shortStrokesAt(pieces: Pieces, links: readonly Link[], slackMm: number): Map<number, number[]> {
+  const short = new Map<number, number[]>();
+  const add = (end: number, other: number): void => {
+    if (pieces.centrelineLength[other >> 1] > slackMm) return;
+    const list = short.get(end);
+    if (list === undefined) short.set(end, [other]);
+    else if (list.length < MOST_SHORT_STROKES && !list.includes(other)) list.push(other);
+  };
+  for (const [a, b] of links) {
+    add(a, a);
+    add(a, b);
+    add(b, b);
+    add(b, a);
+  }
+  return short;
+}
+
+/** More strokes shorter than the slack than this at one place are no drawing; bounds the time. */
+const MOST_SHORT_STROKES = 64;
+
+/** Whether a stroke shorter than the slack leads from one end to the other: it joins them, not the slack. */
+function isAcrossShortStroke(
+  ends: CentrelineEnds,
+  short: ReadonlyMap<number, readonly number[]>,
+  a: number,
+  b: number,
+  slackMm: number,
+): boolean {
+  return (short.get(a) ?? []).some((near) => {
+    const far = near ^ 1;
+    const reaches = Math.hypot(ends.x[far] - ends.x[b], ends.y[far] - ends.y[b]) <= slackMm;
+    return reaches && sideOf(ends, near >> 1, a) !== sideOf(ends, near >> 1, b);
+  });
+}
+
+function sideOf(ends: CentrelineEnds, c: number, end: number): 0 | 1 {
+  const toStart = Math.hypot(ends.x[end] - ends.x[2 * c], ends.y[end] - ends.y[2 * c]);
+  const toEnd = Math.hypot(ends.x[end] - ends.x[2 * c + 1], ends.y[end] - ends.y[2 * c + 1]);
+  return toStart <= toEnd ? 0 : 1;
+}
+
+function membersOf(of: Int32Array): Pick<Bundles, 'first' | 'member'> {
+  const first = new Int32Array(of.length + 1);
+  for (const head of of) if (head >= 0) first[head + 1]++;
+  for (let e = 0; e < of.length; e++) first[e + 1] += first[e];
+  const fill = first.slice();
+  const member = new Int32Array(first[of.length]);
+  for (let e = 0; e < of.length; e++) if (of[e] >= 0) member[fill[of[e]]++] = e;
+  return { first, member };
+}
