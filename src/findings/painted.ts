@@ -1,6 +1,7 @@
 import type { Chip } from '../chip/types.ts';
 import { FINE_MM, finePieces } from '../geometry/curve.ts';
 import { endsAtVertex, type Pieces, startsAtVertex } from '../geometry/pieces.ts';
+import { isNextToCurvedEnd } from '../geometry/strip.ts';
 import { type Closest, closestPoints, type Line, nearer } from './closest.ts';
 
 /**
@@ -91,10 +92,12 @@ export function paintedEnd(
   return { face: [cx - outY * half, cy + outX * half, cx + outY * half, cy - outX * half], radius: 0 };
 }
 
-/** True where a piece has an end that is cut flat, so that its painted area is not just all within half a width of it. */
+/** True where a piece has an end that is cut flat, or is next to one on a curve, so that its painted area is not just all within half a width of it. */
 export function hasFlatEnd(chip: Chip, pieces: Pieces, i: number): boolean {
-  if (chip.channels[pieces.channel[i]].linecap === 'round') return false;
-  return !startsAtVertex(pieces, i) || !endsAtVertex(pieces, i);
+  const { linecap } = chip.channels[pieces.channel[i]];
+  if (linecap === 'round') return false;
+  if (!startsAtVertex(pieces, i) || !endsAtVertex(pieces, i)) return true;
+  return linecap === 'butt' && isNextToCurvedEnd(pieces, i);
 }
 
 /** Straight sides (with the radius that goes round them) of the painted area of a piece. */
@@ -144,19 +147,21 @@ function partsOf(chip: Chip, pieces: Pieces, i: number): Part[] {
   const flatStart = linecap !== 'round' && !startsAtVertex(pieces, i);
   const flatEnd = linecap !== 'round' && !endsAtVertex(pieces, i);
   const lines = linesOf(pieces, i);
-  if (!flatStart && !flatEnd) return [{ lines, radius: half, corners: null }];
+  // Next to a flat end on a curve round ends would reach beyond it: what they would fill is less than 0.1 µm.
+  const isPlain = linecap === 'butt' && isNextToCurvedEnd(pieces, i);
+  if (!flatStart && !flatEnd && !isPlain) return [{ lines, radius: half, corners: null }];
   const beyond = linecap === 'square' ? half : 0;
   const parts: Part[] = [];
   lines.forEach((line, k) => {
     const start = flatStart && k === 0 ? 2 * pieces.centreline[i] : -1;
     const end = flatEnd && k === lines.length - 1 ? 2 * pieces.centreline[i] + 1 : -1;
-    if (start < 0 && end < 0) parts.push({ lines: [line], radius: half, corners: null });
-    else addFlatParts(parts, pieces, line, half, beyond, start, end);
+    if (start < 0 && end < 0 && !isPlain) parts.push({ lines: [line], radius: half, corners: null });
+    else addFlatParts(parts, pieces, line, half, beyond, start, end, !isPlain);
   });
   return parts;
 }
 
-/** A straight line whose area is cut flat at the ends named (−1: round), square to the channel there. */
+/** A straight line whose area is cut flat at the ends named, square to the channel there; −1: round, if wanted. */
 function addFlatParts(
   into: Part[],
   pieces: Pieces,
@@ -165,6 +170,7 @@ function addFlatParts(
   beyond: number,
   start: number,
   end: number,
+  round: boolean,
 ): void {
   const { outX, outY } = pieces;
   const length = Math.hypot(bx - ax, by - ay);
@@ -187,8 +193,8 @@ function addFlatParts(
     radius: 0,
     corners,
   });
-  if (start < 0) into.push(disc(ax, ay, half));
-  if (end < 0) into.push(disc(bx, by, half));
+  if (round && start < 0) into.push(disc(ax, ay, half));
+  if (round && end < 0) into.push(disc(bx, by, half));
 }
 
 function disc(x: number, y: number, radius: number): Part {

@@ -1,5 +1,5 @@
 import type { Nearness } from '../geometry/near.ts';
-import type { Pieces } from '../geometry/pieces.ts';
+import { neighbourPiece, type Pieces } from '../geometry/pieces.ts';
 import { distanceToSegment } from '../geometry/segment.ts';
 import { isInPieceStrip } from '../geometry/strip.ts';
 import { closestPoints, type Line, stretchWithin } from './closest.ts';
@@ -391,8 +391,8 @@ function facingTest(
   const vx = (pieces.x2[j] - pieces.x1[j]) / pieces.length[j];
   const vy = (pieces.y2[j] - pieces.y1[j]) / pieces.length[j];
   const cuts: number[] = [];
-  const start = sideOf(pieces.x1[j], pieces.y1[j], -vx, -vy, neighbour(pieces, j, -1));
-  const end = sideOf(pieces.x2[j], pieces.y2[j], vx, vy, neighbour(pieces, j, 1));
+  const start = sideOf(pieces.x1[j], pieces.y1[j], -vx, -vy, neighbourPiece(pieces, j, -1));
+  const end = sideOf(pieces.x2[j], pieces.y2[j], vx, vy, neighbourPiece(pieces, j, 1));
   return { cuts, at: (s) => start(s) && end(s) };
 
   /** One end of j: out of it points (ox, oy), and its neighbour there goes on in its own direction. */
@@ -416,13 +416,4 @@ function facingTest(
     if (Math.abs(slope) > 1e-12) cuts.push(pieces.start[i] - atStart / slope);
     return (s) => atStart + slope * (s - pieces.start[i]);
   }
-}
-
-/** The piece before (−1) or after (1) on the centreline; −1 at an end. */
-function neighbour(pieces: Pieces, j: number, step: 1 | -1): number {
-  const c = pieces.centreline[j];
-  const first = pieces.firstPiece[c];
-  const count = pieces.firstPiece[c + 1] - first;
-  if (pieces.centrelineClosed[c] === 1) return count > 1 ? first + ((j - first + step + count) % count) : -1;
-  return j + step < first || j + step >= first + count ? -1 : j + step;
 }

@@ -172,13 +172,26 @@ export function endsAtVertex(pieces: Pieces, piece: number): boolean {
   return pieces.centrelineClosed[c] === 1 || piece < pieces.firstPiece[c + 1] - 1;
 }
 
-/** The same for vertices as drawn, without the cuts that only follow a curve more finely. */
-export function startsAtDrawnVertex(pieces: Pieces, piece: number): boolean {
-  const isCut = piece > 0 && pieces.chord[piece - 1] === pieces.chord[piece];
-  return !isCut && startsAtVertex(pieces, piece);
+/** The piece before (−1) or after (1) on the centreline, round a closed one; −1 at an end. */
+export function neighbourPiece(pieces: Pieces, piece: number, step: 1 | -1): number {
+  const c = pieces.centreline[piece];
+  const first = pieces.firstPiece[c];
+  const count = pieces.firstPiece[c + 1] - first;
+  if (pieces.centrelineClosed[c] === 1) {
+    return count > 1 ? first + ((piece - first + step + count) % count) : -1;
+  }
+  return piece + step < first || piece + step >= first + count ? -1 : piece + step;
 }
 
-export function endsAtDrawnVertex(pieces: Pieces, piece: number): boolean {
-  const isCut = piece + 1 < pieces.count && pieces.chord[piece + 1] === pieces.chord[piece];
-  return !isCut && endsAtVertex(pieces, piece);
+/** Whether two pieces next to each other are cut from one curve, or from two that are tangent. */
+export function goesOnSmoothly(pieces: Pieces, one: number, two: number): boolean {
+  if (pieces.bendRadius[one] === 0 || pieces.bendRadius[two] === 0) return false;
+  const ux = pieces.x2[one] - pieces.x1[one];
+  const uy = pieces.y2[one] - pieces.y1[one];
+  const vx = pieces.x2[two] - pieces.x1[two];
+  const vy = pieces.y2[two] - pieces.y1[two];
+  const product = pieces.length[one] * pieces.length[two];
+  // Two chords of one curve turn by half of what each bends.
+  const bends = pieces.length[one] / pieces.bendRadius[one] + pieces.length[two] / pieces.bendRadius[two];
+  return ux * vx + uy * vy > 0 && Math.abs(ux * vy - uy * vx) <= bends * product;
 }

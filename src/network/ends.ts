@@ -254,6 +254,9 @@ function hasStayedInside(
   return reachInStrip(draft, end >> 1, from, direction, strips, channel, null) >= length - draft.slackMm;
 }
 
+/** An end off the centreline by rounding meets it within this many times the slack, at 15° and more. */
+const GRAZING = 4;
+
 /** The place on the candidate's centreline that the end joins. */
 function carryOn(draft: Draft, end: number, candidate: Candidate): { x: number; y: number; s: number } {
   const { pieces, ends, near, slackMm } = draft;
@@ -262,7 +265,9 @@ function carryOn(draft: Draft, end: number, candidate: Candidate): { x: number; 
   const y = ends.y[end];
   const ox = ends.outX[end];
   const oy = ends.outY[end];
-  const reach = width + slackMm;
+  // An end already on the centreline, but for rounding, is not carried along it because it points along it.
+  const isOnIt = candidate.distance <= slackMm;
+  const reach = (isOnIt ? Math.min(width, GRAZING * slackMm) : width) + slackMm;
   let best = Number.POSITIVE_INFINITY;
   let place: { x: number; y: number; s: number } | null = null;
   const found = near.index?.search(
