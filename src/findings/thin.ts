@@ -104,40 +104,56 @@ function partsFrom(
     { way: Math.abs(to - s), apart: gapTo },
   ]);
   return (
-    onlyGrows(samples, stretch.apartMm, context.chip.joinWithinMm) && partInProportion(context, stretch, s, t)
+    onlyGrows(samples, stretch.apartMm, context.chip.joinWithinMm) &&
+    partInProportion(
+      context,
+      stretch,
+      s,
+      t,
+      samples.reduce((most, sample) => Math.max(most, sample.way), 0),
+    )
   );
 }
 
 /**
  * Two straight arms move apart in proportion to the way from where they part; round a hairpin, or on two rungs of one
- * ladder, they reach their distance at once and keep it. So the distance is compared with that at half the way.
+ * ladder, they reach their distance at once and keep it. So the distance is compared with that at half the way; of arms
+ * that part along a tangent where they have come apart at all, at most `farMm` further on.
  */
 function partInProportion(
   context: FindingContext,
   { a, b, apartMm }: ThinStretch,
   s: number,
   t: number,
+  farMm: number,
 ): boolean {
   const { network } = context;
   const paths = channelPaths(context);
   const route = shortest(paths.routes(paths.arcAt(a, s), paths.arcAt(b, t), apartMm), s, t);
   if (route === null) return false;
-  if (route.kind === 'along') return isProportional((3 * s + t) / 4, (s + 3 * t) / 4);
+  if (route.kind === 'along') return isProportional(s, t, (3 * s + t) / 4, (s + 3 * t) / 4);
   // From a port the sides part at its centre, not at the rim where the way begins; and an end that was carried on begins
   // inside the other's strip, wherever the node is. There it is enough that they only move apart.
   const node = route.vertex;
   const isPort = node >= 0 && node < network.nodeCount && network.nodePort[node] >= 0;
   if (isPort || (node >= 0 && (isCarriedOn(a, route.leaveAt) || isCarriedOn(b, route.enterAt)))) return true;
-  return isProportional((s + route.leaveAt) / 2, (t + route.enterAt) / 2);
+  for (let times = 1; ; times *= 2) {
+    const onA = route.leaveAt + times * (s - route.leaveAt);
+    const onB = route.enterAt + times * (t - route.enterAt);
+    if (isProportional(onA, onB, (onA + route.leaveAt) / 2, (onB + route.enterAt) / 2)) return true;
+    const areApart = distanceBetween(onA, onB) > context.chip.joinWithinMm;
+    const step = Math.abs(s - route.leaveAt);
+    if (areApart || step === 0 || (2 * times - 1) * step > farMm) return false;
+  }
 
   function isCarriedOn(centreline: number, position: number): boolean {
     return position < 0 || position > network.trace.near.pieces.centrelineLength[centreline];
   }
 
-  function isProportional(halfS: number, halfT: number): boolean {
+  function isProportional(onA: number, onB: number, halfA: number, halfB: number): boolean {
     // Two centrelines still on each other have not parted at all: one drawn through the other's strip.
-    const apart = distanceBetween(s, t);
-    return apart > context.chip.joinWithinMm && apart >= 1.5 * distanceBetween(halfS, halfT);
+    const apart = distanceBetween(onA, onB);
+    return apart > context.chip.joinWithinMm && apart >= 1.5 * distanceBetween(halfA, halfB);
   }
 
   function distanceBetween(onA: number, onB: number): number {
