@@ -96,10 +96,10 @@ function isPassedOnCurve(
   if (Math.hypot(awayX, awayY) <= ON_IT_MM) {
     return isFineCut && Math.abs(sineBetween(pieces, i, j)) <= SAME_DIRECTION_SINE;
   }
-  const arriving =
-    awayX * (pieces.x2[before] - pieces.x1[before]) + awayY * (pieces.y2[before] - pieces.y1[before]);
-  const leaving =
-    awayX * (pieces.x2[after] - pieces.x1[after]) + awayY * (pieces.y2[after] - pieces.y1[after]);
+  // Seen across piece j: its nearest point may be a vertex, though its curve goes on and passes nearer.
+  const side = (pieces.x2[j] - pieces.x1[j]) * awayY - (pieces.y2[j] - pieces.y1[j]) * awayX;
+  const arriving = side * sineBetween(pieces, j, before);
+  const leaving = side * sineBetween(pieces, j, after);
   return isFineCut ? !(arriving < 0 && leaving > 0) : !(arriving <= 0 && leaving >= 0);
 }
 
