@@ -137,10 +137,19 @@ function partInProportion(
   const node = route.vertex;
   const isPort = node >= 0 && node < network.nodeCount && network.nodePort[node] >= 0;
   if (isPort || (node >= 0 && (isCarriedOn(a, route.leaveAt) || isCarriedOn(b, route.enterAt)))) return true;
+  // Joined a little way from where they part (drawn at rounding), one side's way begins there, as if it had gone on back.
+  const backA = route.leaveAt - Math.sign(s - route.leaveAt) * route.lengthMm;
+  const backB = route.enterAt - Math.sign(t - route.enterAt) * route.lengthMm;
   for (let times = 1; ; times *= 2) {
     const onA = route.leaveAt + times * (s - route.leaveAt);
     const onB = route.enterAt + times * (t - route.enterAt);
-    if (isProportional(onA, onB, (onA + route.leaveAt) / 2, (onB + route.enterAt) / 2)) return true;
+    if (
+      isProportional(onA, onB, (onA + route.leaveAt) / 2, (onB + route.enterAt) / 2) ||
+      isProportional(onA, onB, (onA + backA) / 2, (onB + route.enterAt) / 2) ||
+      isProportional(onA, onB, (onA + route.leaveAt) / 2, (onB + backB) / 2)
+    ) {
+      return true;
+    }
     const areApart = distanceBetween(onA, onB) > context.chip.joinWithinMm;
     const step = Math.abs(s - route.leaveAt);
     if (areApart || step === 0 || (2 * times - 1) * step > farMm) return false;
