@@ -254,8 +254,8 @@ function hasStayedInside(
   return reachInStrip(draft, end >> 1, from, direction, strips, channel, null) >= length - draft.slackMm;
 }
 
-/** An end off the centreline by rounding meets it within this many times the slack, at 15° and more. */
-const GRAZING = 4;
+/** An end on a centreline within the slack is carried on at most this many slacks. */
+const FLAT = 4;
 
 /** The place on the candidate's centreline that the end joins. */
 function carryOn(draft: Draft, end: number, candidate: Candidate): { x: number; y: number; s: number } {
@@ -265,9 +265,8 @@ function carryOn(draft: Draft, end: number, candidate: Candidate): { x: number; 
   const y = ends.y[end];
   const ox = ends.outX[end];
   const oy = ends.outY[end];
-  // An end already on the centreline, but for rounding, is not carried along it because it points along it.
-  const isOnIt = candidate.distance <= slackMm;
-  const reach = (isOnIt ? Math.min(width, GRAZING * slackMm) : width) + slackMm;
+  // On the centreline within the slack it has met it there, however flat the angle: no place far ahead.
+  const reach = candidate.distance <= slackMm ? FLAT * slackMm : width + slackMm;
   let best = Number.POSITIVE_INFINITY;
   let place: { x: number; y: number; s: number } | null = null;
   const found = near.index?.search(
@@ -288,9 +287,12 @@ function carryOn(draft: Draft, end: number, candidate: Candidate): { x: number; 
     const t = (wx * vy - wy * vx) / cross;
     const s = (wx * oy - wy * ox) / cross;
     const tolerance = slackMm / pieces.length[i];
-    if (t < -slackMm || t > reach || s < -tolerance || s > 1 + tolerance || t >= best) continue;
-    best = t;
+    if (t < -slackMm || t > reach || s < -tolerance || s > 1 + tolerance) continue;
     const share = Math.min(1, Math.max(0, s));
+    // A hit just past a vertex gives way to one on the piece that goes on from there.
+    const rank = share === s ? t : t + slackMm;
+    if (rank >= best) continue;
+    best = rank;
     place = {
       x: pieces.x1[i] + share * vx,
       y: pieces.y1[i] + share * vy,

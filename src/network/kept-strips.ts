@@ -59,12 +59,13 @@ export class KeptStrips {
     });
   }
 
-  /** Whether an end was carried on in its own direction. */
+  /** Whether an end was carried on in its own direction, to within the slack. */
   private isStraightOn(end: number): boolean {
-    const { ends } = this.draft;
-    const along =
-      (ends.tipX[end] - ends.x[end]) * ends.outX[end] + (ends.tipY[end] - ends.y[end]) * ends.outY[end];
-    return along > ends.extension[end] * (1 - 1e-9);
+    const { ends, slackMm } = this.draft;
+    const dx = ends.tipX[end] - ends.x[end];
+    const dy = ends.tipY[end] - ends.y[end];
+    const along = dx * ends.outX[end] + dy * ends.outY[end];
+    return along > 0 && Math.abs(dx * ends.outY[end] - dy * ends.outX[end]) <= slackMm;
   }
 
   /** A curve carried on straight turns a little where it is: its piece and what was carried on are two straight pieces. */

@@ -22,6 +22,7 @@ const ROUNDING_MM = 1e-9;
 
 /** Two strokes that run within this angle of each other run along each other (rule 4). */
 const ALONG_RAD = (15 * Math.PI) / 180;
+const MOST_SINE = Math.sin(ALONG_RAD) * (1 + 1e-9);
 
 /**
  * Rule 4 and the last sentence of rule 6: an end piece that ends dead inside the strip it joined is left out; so is one
@@ -171,7 +172,8 @@ function findOverlap(
       if (e >= 0) otherEnd = e;
     }
     if (!meets) continue;
-    if (!runsAlong(draft, c, position, from, otherChannel, Math.min(width, otherWidth) / 2)) return null;
+    const within = Math.min(width, otherWidth) / 2;
+    if (!runsAlong(draft, c, position, from, otherChannel, otherEnd, within)) return null;
     if (otherEnd >= 0) {
       // Two end pieces overlap: only the narrower channel's, of equal ones the later drawn, is left out.
       const channel = pieces.centrelineChannel[c];
@@ -226,13 +228,17 @@ function endAt(draft: Draft, stops: Stops, stop: number): number {
   return -1;
 }
 
-/** Whether a centreline between two positions stays within `within` of the channel's centreline and within 15° of it. */
+/**
+ * Whether a centreline between two positions stays within `within` of the channel's centreline and within 15° of it; what
+ * one of its ends was carried on by counts with it.
+ */
 function runsAlong(
   draft: Draft,
   c: number,
   s1: number,
   s2: number,
   channel: number,
+  carriedEnd: number,
   within: number,
 ): boolean {
   const { pieces, near } = draft;
@@ -264,10 +270,29 @@ function runsAlong(
         best = distance;
         sine = Math.abs(sineBetween(draft, i, j));
       }
-      if (best > within + draft.slackMm || sine > Math.sin(ALONG_RAD) * (1 + 1e-9)) return false;
+      const isAlong = best <= within + draft.slackMm && sine <= MOST_SINE;
+      if (!isAlong && !runsAlongExtension(draft, i, at, carriedEnd, within)) return false;
     }
   }
   return true;
+}
+
+/** The same beside what an end was carried on by. */
+function runsAlongExtension(
+  { pieces, ends, slackMm }: Draft,
+  piece: number,
+  at: { readonly x: number; readonly y: number },
+  end: number,
+  within: number,
+): boolean {
+  if (end < 0 || ends.extension[end] <= slackMm) return false;
+  const vx = ends.tipX[end] - ends.x[end];
+  const vy = ends.tipY[end] - ends.y[end];
+  const ux = pieces.x2[piece] - pieces.x1[piece];
+  const uy = pieces.y2[piece] - pieces.y1[piece];
+  const sine = Math.abs((ux * vy - uy * vx) / (pieces.length[piece] * ends.extension[end]));
+  const distance = distanceToSegment(at.x, at.y, ends.x[end], ends.y[end], ends.tipX[end], ends.tipY[end]);
+  return distance <= within + slackMm && sine <= MOST_SINE;
 }
 
 function sineBetween(draft: Draft, i: number, j: number): number {

@@ -45,7 +45,8 @@ const FEW = 32;
 
 /**
  * How far a centreline, walked from position `from` in the given direction, stays inside a strip without leaving it
- * (mm; 0 when it leaves at once): as joined where `kept` is given, else as drawn. Walks piece by piece and looks only at the pieces near each.
+ * (mm; 0 when it leaves at once): as joined where `kept` is given, else as drawn. Walks piece by piece and looks only at the
+ * pieces near each as drawn, and at those `grown` towards the walk by what was carried on.
  */
 export function reachInStrip(
   draft: Draft,
@@ -55,8 +56,10 @@ export function reachInStrip(
   strip: StripNeighbours,
   key: number,
   kept: KeptStrips | null,
+  grown: readonly number[] = [],
 ): number {
   const { pieces } = draft;
+  const grownHere = grown.filter((piece) => strip.isOf(piece, key));
   const length = pieces.centrelineLength[centreline];
   let walked = 0;
 
@@ -69,7 +72,7 @@ export function reachInStrip(
     const span = startEnd % 2 === 0 ? -from : from - length;
     const inside = coverage(
       draft,
-      piecesNearExtension(draft, startEnd).filter((piece) => strip.isOf(piece, key)),
+      [...piecesNearExtension(draft, startEnd).filter((piece) => strip.isOf(piece, key)), ...grownHere],
       draft.ends.tipX[startEnd],
       draft.ends.tipY[startEnd],
       draft.ends.x[startEnd],
@@ -94,7 +97,7 @@ export function reachInStrip(
       : pieces.start[piece] + pieces.length[piece] - position;
     const inside = coverage(
       draft,
-      strip.of(piece, key),
+      grownHere.length === 0 ? strip.of(piece, key) : [...strip.of(piece, key), ...grownHere],
       forward ? pieces.x1[piece] : pieces.x2[piece],
       forward ? pieces.y1[piece] : pieces.y2[piece],
       forward ? pieces.x2[piece] : pieces.x1[piece],

@@ -1,6 +1,6 @@
 import { pieceAt } from '../geometry/pieces.ts';
 import type { StripEnds } from '../geometry/strip.ts';
-import type { Draft } from './draft.ts';
+import { type Draft, endPiece } from './draft.ts';
 import { isEqualDuct, isEqualSize } from './equal-ducts.ts';
 import { KeptStrips } from './kept-strips.ts';
 import { TRIM_BY_RULE, TRIM_TO_WALL } from './node-joints.ts';
@@ -47,13 +47,15 @@ export function findTrims(
     const begin = byNode.first[node];
     const end = byNode.first[node + 1];
     if (end - begin < 2 || allEqual(draft, stops, byNode, begin, end)) continue;
+    const grown = grownEnds(draft, stops, byNode, begin, end);
     for (let m = begin; m < end; m++) memberStamp[strips.group[stops.centreline[byNode.stop[m]]]] = node;
     for (let m = begin; m < end; m++) {
       const stop = byNode.stop[m];
       const c = stops.centreline[stop];
       const closed = pieces.centrelineClosed[c] === 1;
-      if (closed || stops.from[stop] > kept.from[c]) trimArm(c, stops.from[stop], -1, node, begin, end);
-      if (closed || stops.to[stop] < kept.to[c]) trimArm(c, stops.to[stop], 1, node, begin, end);
+      if (closed || stops.from[stop] > kept.from[c])
+        trimArm(c, stops.from[stop], -1, node, begin, end, grown);
+      if (closed || stops.to[stop] < kept.to[c]) trimArm(c, stops.to[stop], 1, node, begin, end, grown);
     }
   }
   return { trims: toColumns(pieces.centrelineCount, found), strips: strips.ends };
@@ -65,6 +67,7 @@ export function findTrims(
     node: number,
     begin: number,
     end: number,
+    grown: readonly number[],
   ): void {
     arm++;
     const own = strips.group[c];
@@ -73,7 +76,7 @@ export function findTrims(
       triedStamp[group] = arm;
       const factor = trimFactor(draft, c, group);
       if (factor >= 1) return;
-      trimAlong(c, position, direction, group, factor, resolved(node, factor));
+      trimAlong(c, position, direction, group, factor, resolved(node, factor), grown);
     };
     if (end - begin <= FEW_MEMBERS) {
       for (let m = begin; m < end; m++) tryStrip(strips.group[stops.centreline[byNode.stop[m]]]);
@@ -101,12 +104,13 @@ export function findTrims(
     group: number,
     factorByRule: number,
     factorResolved: number,
+    grown: readonly number[],
   ): void {
     let line = c;
     let from = position;
     let way = direction;
     for (;;) {
-      const length = reachInStrip(draft, line, from, way, neighbours, group, keptStrips);
+      const length = reachInStrip(draft, line, from, way, neighbours, group, keptStrips, grown);
       if (length > 0) addTrim(line, from, way, length, factorByRule, factorResolved);
       if (pieces.centrelineClosed[line] === 1) return;
       const end = way === 1 ? kept.to[line] : kept.from[line];
@@ -155,6 +159,19 @@ export function findTrims(
     if (from < 0) found.push({ c, from: from + total, to: total, factorByRule, factorResolved });
     if (to > total) found.push({ c, from: 0, to: to - total, factorByRule, factorResolved });
   }
+}
+
+/** The end pieces that were carried on to a node: the list of near pairs knows them as drawn. */
+function grownEnds(draft: Draft, stops: Stops, byNode: NodeStops, begin: number, end: number): number[] {
+  const { pieces } = draft;
+  const grown: number[] = [];
+  for (let m = begin; m < end; m++) {
+    const stop = byNode.stop[m];
+    const c = stops.centreline[stop];
+    if (stops.from[stop] < 0) grown.push(endPiece(pieces, 2 * c));
+    else if (stops.to[stop] > pieces.centrelineLength[c]) grown.push(endPiece(pieces, 2 * c + 1));
+  }
+  return grown;
 }
 
 /** Up to so many stops at a node each is asked. */

@@ -1,0 +1,66 @@
+import { describe, expect, it } from 'vitest';
+import { buildNetwork } from '../../src/network/build.ts';
+import { type ChannelSpec, chipOf, type PortSpec } from './chip-of.ts';
+
+/** Ends that are carried on (rule 3), where it once depended on fractions of a micrometre or on the order of the strokes. */
+
+function ducts(channels: readonly ChannelSpec[], ports: readonly PortSpec[] = []): Record<string, number> {
+  const network = buildNetwork(chipOf(channels, ports));
+  return Object.fromEntries(
+    Array.from({ length: network.reachCount }, (_, r) => [network.reachName(r), network.reachDuctMm[r]]),
+  );
+}
+
+describe('two strokes that overlap end to end', () => {
+  const ports: PortSpec[] = [
+    { name: 'in', x: 6, y: 5, radiusMm: 0.5 },
+    { name: 'out', x: 14, y: 5, radiusMm: 0.5 },
+  ];
+  for (const off of [1e-9, 1e-7, 1e-5, 1e-4, 2e-4, 5e-4, 9e-4, 2e-3, 5e-3, 0.02]) {
+    for (const tilt of [-2, -0.6, 0, 0.6, 2]) {
+      it(`are one duct when they are ${off} mm off and tilted by ${tilt * off} mm`, () => {
+        const lengths = ducts(
+          [
+            { name: 'a', widthMm: 0.8, lines: [[6, 5, 10.3, 5 + tilt * off]] },
+            { name: 'b', widthMm: 0.8, lines: [[9.7, 5 + off, 14, 5]] },
+          ],
+          ports,
+        );
+        // No two ducts side by side: the whole way from rim to rim is counted once.
+        const total = Object.values(lengths).reduce((sum, length) => sum + length, 0);
+        expect(Object.keys(lengths)).toHaveLength(2);
+        expect(total).toBeGreaterThan(7 - 1e-6);
+        // And at most the step from one to the other.
+        expect(total).toBeLessThan(7 + (1 + Math.abs(tilt)) * off + 1e-9);
+      });
+    }
+  }
+});
+
+describe('a branch that was carried on', () => {
+  it('trims the other arms as the same branch drawn to the centreline', () => {
+    const draw = (endY: number): Record<string, number> =>
+      ducts([
+        { name: 'feed', widthMm: 0.4, depthMm: 0.2, lines: [[12, 5, 12, endY]] },
+        { name: 'lane', widthMm: 0.15, depthMm: 0.08, lines: [[6, 11, 12, 12]] },
+        { name: 'main', widthMm: 0.4, depthMm: 0.08, lines: [[17.4, 15.3, 12, 12, 7, 5.6]] },
+      ]);
+    expect(draw(11.7).lane).toBeCloseTo(draw(12).lane, 9);
+    expect(draw(12).lane).toBeCloseTo(5.826707909, 6);
+  });
+
+  it('to a vertex trims what it meets there, on whichever side of the vertex it arrives and in any order', () => {
+    for (const aside of [-9e-4, -4e-4, 0, 4e-4, 9e-4]) {
+      const channels: ChannelSpec[] = [
+        { name: 'branch', widthMm: 0.3, depthMm: 0.2, lines: [[13 + aside, 7, 10.01 + aside, 9.99]] },
+        { name: 'main', widthMm: 0.15, depthMm: 0.12, lines: [[16, 10, 10, 10, 4, 10]] },
+      ];
+      for (const drawn of [channels, [...channels].reverse()]) {
+        const lengths = ducts(drawn);
+        // 0.15/sin 45° of the main lies in the branch's strip and counts by 0.5 · 0.6³.
+        expect(lengths['main:1']).toBeCloseTo(6 - (0.15 / Math.SQRT1_2) * (1 - 0.5 * 0.6 ** 3), 2);
+        expect(lengths['main:2']).toBeCloseTo(6, 2);
+      }
+    }
+  });
+});
