@@ -10,7 +10,7 @@ import { readSvg } from '../../src/svg/read.ts';
 
 const EXACT_MM = 1e-4;
 const SLACK_MM = 1e-3;
-const RADII = [1, 3, 10, 30, 60, 100];
+const RADII = [1, 10, 30, 100];
 
 type At = (x: number, y: number) => string;
 
