@@ -1,3 +1,4 @@
+import { LIMIT_SLACK } from '../chip/limits.ts';
 import type { Nearness } from '../geometry/near.ts';
 import { neighbourPiece, type Pieces } from '../geometry/pieces.ts';
 import { distanceToSegment } from '../geometry/segment.ts';
@@ -250,7 +251,11 @@ function addThinStretches(
   // The relative slack of a limit, rounding of coordinates where the limit is nought, and what curves may lie beside their
   // pieces: a wall round a bend drawn exactly at the limit is not below it.
   const withinMm =
-    halves + limitMm * (1 - 1e-9) - (limitMm === 0 ? -1e-9 * halves : 0) - pieces.bulge[i] - pieces.bulge[j];
+    halves +
+    limitMm * (1 - LIMIT_SLACK) -
+    (limitMm === 0 ? -1e-9 * halves : 0) -
+    pieces.bulge[i] -
+    pieces.bulge[j];
   const flat = hasFlatEnd(chip, pieces, i) || hasFlatEnd(chip, pieces, j);
   if (!flat && distanceMm >= withinMm) return;
   if (distanceMm <= chip.joinWithinMm && crossesSquarely(pieces, i, j)) return;

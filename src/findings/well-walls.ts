@@ -1,3 +1,4 @@
+import { LIMIT_SLACK } from '../chip/limits.ts';
 import { FINE_MM } from '../geometry/curve.ts';
 import { type Closest, type Line, stretchWithin } from './closest.ts';
 import type { FindingContext } from './context.ts';
@@ -40,7 +41,7 @@ export function findWellWalls(
     const close: { piece: number; gap: Closest; from: number; to: number }[] = [];
     for (const i of index.search(port.xMm - r, port.yMm - r, port.xMm + r, port.yMm + r)) {
       // A curve may lie beside its pieces: round a well exactly at the limit it is not below it.
-      const limit = limits[pieces.channel[i]] * (1 - 1e-9) - Math.min(pieces.bulge[i], FINE_MM);
+      const limit = limits[pieces.channel[i]] * (1 - LIMIT_SLACK) - Math.min(pieces.bulge[i], FINE_MM);
       const gap = gapToHole(chip, pieces, i, port);
       if (gap.distanceMm >= limit) continue;
       const within = stretchWithin(
