@@ -1,3 +1,4 @@
+import { scaledCurves } from '../geometry/curve.ts';
 import type { Layout, LayoutItem } from '../layout/types.ts';
 import type { RunSheet } from '../runsheet/types.ts';
 import { readChannels } from './channels.ts';
@@ -139,7 +140,8 @@ function linesOf(item: LayoutItem): readonly Float64Array[] {
 function inMm({ name, rings, sides }: DrawnEdge, unitMm: number): ChipEdge {
   return {
     name,
-    rings: rings.map((ring) => ring.map((value) => value * unitMm)),
+    rings: rings.map(({ points }) => points.map((value) => value * unitMm)),
+    ringCurves: rings.map(({ curves }) => scaledCurves(curves, unitMm)),
     sidesMm: [sides[0] * unitMm, sides[1] * unitMm],
   };
 }

@@ -1,4 +1,5 @@
 import { InputError } from '../errors.ts';
+import { scaledCurves } from '../geometry/curve.ts';
 import type { Centreline, Stroke } from '../layout/types.ts';
 import { isotropicSection } from '../physics/section.ts';
 import { quote } from '../runsheet/quote.ts';
@@ -126,8 +127,13 @@ function sectionOf(drawnWidthMm: number, depthMm: number, profile: Channel['prof
   return { ductWidthMm: ductWidthM, stripHalfWidthMm: stripWidthM / 2 };
 }
 
-function inMm({ points, closed, bendRadius }: Centreline, unitMm: number): Centreline {
-  return { points: scaled(points, unitMm), closed, bendRadius: scaled(bendRadius, unitMm) };
+function inMm({ points, closed, bendRadius, curves }: Centreline, unitMm: number): Centreline {
+  return {
+    points: scaled(points, unitMm),
+    closed,
+    bendRadius: scaled(bendRadius, unitMm),
+    curves: scaledCurves(curves, unitMm),
+  };
 }
 
 function scaled(values: Float64Array, factor: number): Float64Array {

@@ -1,5 +1,6 @@
 import { InputError } from '../errors.ts';
-import type { Centreline, Layout, LayoutItem } from '../layout/types.ts';
+import type { Curve } from '../geometry/curve.ts';
+import type { Centreline, Hole, Layout, LayoutItem } from '../layout/types.ts';
 import { layerKey } from '../runsheet/names.ts';
 import { nearest } from '../runsheet/nearest.ts';
 import { quote } from '../runsheet/quote.ts';
@@ -13,9 +14,16 @@ import { outerRings } from './rings.ts';
 export interface DrawnEdge {
   readonly name: string;
   readonly ordinals: ReadonlySet<number>;
-  readonly rings: readonly Float64Array[];
+  readonly rings: readonly EdgeRing[];
   /** Longer first. */
   readonly sides: readonly [number, number];
+}
+
+export interface EdgeRing {
+  /** x0 y0 x1 y1 …, first point repeated at the end. */
+  readonly points: Float64Array;
+  /** The curve that each side was cut from, null for a straight one; null when all are straight. */
+  readonly curves: readonly (Curve | null)[] | null;
 }
 
 /**
@@ -46,7 +54,9 @@ export function findEdge(layout: Layout, sheet: RunSheet | null, file: string): 
       `outline: the drawing has no shape ${quote(asked)}${near === null ? '' : `; did you mean ${quote(near)}?`}`,
     );
   }
-  const rings = outerRings(items.flatMap(ringsOf));
+  const drawn = items.flatMap(ringsOf);
+  const outer = new Set(outerRings(drawn.map(({ points }) => points)));
+  const rings = drawn.filter(({ points }) => outer.has(points));
   const sides = sidesOf(items, rings);
   if (sides === null || sides[1] <= 0) {
     const what = `the shape ${quote(name)} does not close; draw the chip edge as one closed shape`;
@@ -70,25 +80,34 @@ function named(items: readonly LayoutItem[], name: string): readonly LayoutItem[
 /** Corners of the polygon that stands for a round chip: it is within 5e-6 of the circle. */
 const CIRCLE_CORNERS = 1024;
 
-function ringsOf(item: LayoutItem): readonly Float64Array[] {
+function ringsOf(item: LayoutItem): readonly EdgeRing[] {
   switch (item.kind) {
     case 'stroke':
-      return item.centrelines.filter(closes).map(({ points }) => closed(points));
+      return item.centrelines.filter(closes).map(closed);
     case 'outline':
     case 'ignored':
-      return item.rings.filter((ring) => ring.length >= 6).map(closed);
-    case 'hole': {
-      const ring = new Float64Array(2 * CIRCLE_CORNERS + 2);
-      for (let i = 0; i <= CIRCLE_CORNERS; i++) {
-        const angle = (2 * Math.PI * (i % CIRCLE_CORNERS)) / CIRCLE_CORNERS;
-        ring[2 * i] = item.x + item.radius * Math.cos(angle);
-        ring[2 * i + 1] = item.y + item.radius * Math.sin(angle);
-      }
-      return [ring];
-    }
+      return item.rings
+        .map((points, k) => ({ points, curves: item.ringCurves?.[k] ?? null }))
+        .filter(({ points }) => points.length >= 6)
+        .map(closed);
+    case 'hole':
+      return [circleRing(item)];
     default:
       return item satisfies never;
   }
+}
+
+function circleRing({ x, y, radius }: Hole): EdgeRing {
+  const ellipse = { cx: x, cy: y, ux: radius, uy: 0, vx: 0, vy: radius };
+  const points = new Float64Array(2 * CIRCLE_CORNERS + 2);
+  const curves: Curve[] = [];
+  const angleAt = (i: number): number => (2 * Math.PI * i) / CIRCLE_CORNERS;
+  for (let i = 0; i <= CIRCLE_CORNERS; i++) {
+    points[2 * i] = x + radius * Math.cos(angleAt(i % CIRCLE_CORNERS));
+    points[2 * i + 1] = y + radius * Math.sin(angleAt(i % CIRCLE_CORNERS));
+    if (i > 0) curves.push({ kind: 'arc', ellipse, from: angleAt(i - 1), to: angleAt(i) });
+  }
+  return { points, curves };
 }
 
 /** Closed, or open by less than a hundredth of the way from its first point to its farthest corner. */
@@ -102,27 +121,24 @@ function closes({ points, closed: isClosed }: Centreline): boolean {
   return Math.hypot(points[n - 2]! - x, points[n - 1]! - y) < 0.01 * reach;
 }
 
-function closed(points: Float64Array): Float64Array {
+function closed({ points, curves }: EdgeRing): EdgeRing {
   const n = points.length;
-  if (points[0] === points[n - 2] && points[1] === points[n - 1]) return points;
+  if (points[0] === points[n - 2] && points[1] === points[n - 1]) return { points, curves };
   const ring = new Float64Array(n + 2);
   ring.set(points);
   ring[n] = points[0]!;
   ring[n + 1] = points[1]!;
-  return ring;
+  return { points: ring, curves: curves && [...curves, null] };
 }
 
-function sidesOf(
-  items: readonly LayoutItem[],
-  rings: readonly Float64Array[],
-): readonly [number, number] | null {
+function sidesOf(items: readonly LayoutItem[], rings: readonly EdgeRing[]): readonly [number, number] | null {
   const only = items[0];
   if (items.length === 1 && only?.kind === 'hole') return [2 * only.radius, 2 * only.radius];
-  const points = new Float64Array(rings.reduce((sum, ring) => sum + ring.length, 0));
+  const points = new Float64Array(rings.reduce((sum, ring) => sum + ring.points.length, 0));
   let at = 0;
   for (const ring of rings) {
-    points.set(ring, at);
-    at += ring.length;
+    points.set(ring.points, at);
+    at += ring.points.length;
   }
   const rectangle = smallestRectangle(points);
   return rectangle === null ? null : [rectangle.longSide, rectangle.shortSide];

@@ -53,7 +53,8 @@ export function selectItems(
   for (const [kind, count] of Object.entries(layout.unread)) ignored.add(kind, count);
   const isIgnored = ignoreTest(sheet?.ignore ?? []);
   const isChamberPart = chamberTest(sheet);
-  const inside = edge !== null && sheet?.outline != null ? indexRings([edge.rings]) : null;
+  const inside =
+    edge !== null && sheet?.outline != null ? indexRings([edge.rings.map(({ points }) => points)]) : null;
 
   const note = (item: LayoutItem, why: string): void => {
     if (item.name !== null && !setAside.has(item.name)) setAside.set(item.name, why);

@@ -1,3 +1,4 @@
+import type { Curve } from '../geometry/curve.ts';
 import type { Centreline } from '../layout/types.ts';
 import type {
   AcceptEntry,
@@ -87,6 +88,8 @@ export interface ChipEdge {
   readonly name: string;
   /** Outer rings, mm, x0 y0 x1 y1 …, first point repeated at the end. */
   readonly rings: readonly Float64Array[];
+  /** The curve that each side of each ring was cut from, mm, null for a straight one; null or left out where all are straight. */
+  readonly ringCurves?: readonly (readonly (Curve | null)[] | null)[];
   /** Sides of the smallest rectangle at any angle round it, mm, longer first. */
   readonly sidesMm: readonly [number, number];
 }

@@ -1,8 +1,10 @@
 import Flatten from '@flatten-js/core';
 import Flatbush from 'flatbush';
+import { indexRings } from '../chip/rings.ts';
 import type { ChipEdge } from '../chip/types.ts';
+import { type Curve, FINE_MM, finePieces } from '../geometry/curve.ts';
 import { segmentDistance } from '../geometry/segment.ts';
-import { closestPoints, type Line } from './closest.ts';
+import { type Closest, closestPoints, type Line } from './closest.ts';
 import type { FindingContext } from './context.ts';
 import { lineOf, outlineOf } from './painted.ts';
 import { isBelow } from './rule.ts';
@@ -30,34 +32,38 @@ const ROUNDING_MM = 1e-9;
 export function findEdgeFaults(context: FindingContext, edge: ChipEdge, marginMm: number): EdgeFault[] {
   const { chip, network } = context;
   const { pieces } = network.trace.near;
-  const outline = toOutline(edge.rings);
+  const outline = toOutline(edge.rings.map((ring, k) => fineRing(ring, edge.ringCurves?.[k] ?? null)));
   if (outline.sides.length === 0) return [];
   const faults: EdgeFault[] = [];
+  // What lies along a curve at exactly the margin is not within it: its straight pieces may be, by so much.
+  const edgeSlackMm = (edge.ringCurves ?? []).some((curves) => curves !== null) ? FINE_MM : 0;
+  const slackOf = (i: number): number => edgeSlackMm + Math.min(FINE_MM, pieces.bulge[i]);
 
   for (const port of chip.ports) {
     const near = measure(outline, [port.xMm, port.yMm, port.xMm, port.yMm], port.radiusMm);
-    if (isFault(near.gapMm, marginMm)) {
+    if (isFault(near.gapMm + edgeSlackMm, marginMm)) {
       faults.push(toFault(port.name, true, near));
     }
   }
 
   for (let c = 0; c < pieces.centrelineCount; c++) {
     const first = pieces.firstPiece[c];
-    let inside = isInside(outline.rings, pieces.x1[first], pieces.y1[first]);
+    let inside = outline.contains(pieces.x1[first], pieces.y1[first]);
     let worst: Near | null = null;
     const { name } = chip.channels[pieces.centrelineChannel[c]];
     for (let i = first; i < pieces.firstPiece[c + 1]; i++) {
       let near: Near | null = null;
-      if (comesNear(outline, pieces.half[i] * Math.SQRT2 + marginMm, lineOf(pieces, i))) {
+      const reach = pieces.half[i] * Math.SQRT2 + pieces.bulge[i];
+      if (comesNear(outline, reach + marginMm, lineOf(pieces, i))) {
         near = nearOfPiece(i);
-        inside = isInside(outline.rings, pieces.x2[i], pieces.y2[i]);
+        inside = outline.contains(pieces.x2[i], pieces.y2[i]);
       } else if (!inside) {
         near = farOutside(i);
       }
-      const isAtFault = near !== null && isFault(near.gapMm, marginMm);
+      const isAtFault = near !== null && isFault(near.gapMm + slackOf(i), marginMm);
       if (near !== null && isAtFault) worst = worst === null ? near : worseOf(worst, near);
       // Two pieces that come near the edge and meet far from it are two places.
-      if (worst !== null && !(isAtFault && (!inside || isFault(gapAtEnd(i), marginMm)))) {
+      if (worst !== null && !(isAtFault && (!inside || isFault(gapAtEnd(i) + slackOf(i), marginMm)))) {
         faults.push(toFault(name, false, worst));
         worst = null;
       }
@@ -107,24 +113,34 @@ interface Near extends Pick<EdgeFault, 'gapMm' | 'xMm' | 'yMm' | 'mark'> {
   readonly isEven: boolean;
 }
 
+/** The ring with its curves cut so finely that the distance from them is exact to 0.1 µm. */
+function fineRing(ring: Float64Array, curves: readonly (Curve | null)[] | null): Float64Array {
+  if (curves === null) return ring;
+  const points = [ring[0], ring[1]];
+  for (let k = 0; 2 * k + 3 < ring.length; k++) {
+    const curve = curves[k];
+    const fine = curve ? finePieces(curve, FINE_MM) : [];
+    for (const { x, y } of fine.slice(0, -1)) points.push(x, y);
+    points.push(ring[2 * k + 2], ring[2 * k + 3]);
+  }
+  return Float64Array.from(points);
+}
+
 interface Outline {
-  readonly polygon: Flatten.Polygon;
-  readonly rings: readonly Float64Array[];
+  /** Whether a point lies inside, by the even-odd rule. */
+  readonly contains: (x: number, y: number) => boolean;
   readonly sides: readonly Line[];
+  /** Boxes of the sides. */
   readonly index: Flatbush;
 }
 
 function toOutline(rings: readonly Float64Array[]): Outline {
   const sides: Line[] = [];
-  const polygon = new Flatten.Polygon();
   for (const ring of rings) {
-    const corners: Flatten.Point[] = [];
     for (let k = 0; k + 3 < ring.length; k += 2) {
       if (ring[k] === ring[k + 2] && ring[k + 1] === ring[k + 3]) continue;
       sides.push([ring[k], ring[k + 1], ring[k + 2], ring[k + 3]]);
-      corners.push(new Flatten.Point(ring[k], ring[k + 1]));
     }
-    if (corners.length > 2) polygon.addFace(corners);
   }
   const index = new Flatbush(Math.max(1, sides.length));
   for (const [ax, ay, bx, by] of sides) {
@@ -132,7 +148,39 @@ function toOutline(rings: readonly Float64Array[]): Outline {
   }
   if (sides.length === 0) index.add(0, 0, 0, 0);
   index.finish();
-  return { polygon, rings, sides, index };
+  return { contains: indexRings([rings]).contains, sides, index };
+}
+
+/** The points of a line (or point) and the edge nearest to each other: the index leaves few sides to be measured. */
+function nearestOnEdge({ index, sides }: Outline, line: Line): Closest {
+  const [ax, ay, bx, by] = line;
+  const [some] = index.neighbors((ax + bx) / 2, (ay + by) / 2, 1);
+  const shape = toShape(line);
+  const within = distanceOf(shape, sides[some]).distanceMm * (1 + 1e-9);
+  let best: Closest | null = null;
+  const hits = index.search(
+    Math.min(ax, bx) - within,
+    Math.min(ay, by) - within,
+    Math.max(ax, bx) + within,
+    Math.max(ay, by) + within,
+  );
+  for (const k of hits.sort((p, q) => p - q)) {
+    const distance = distanceOf(shape, sides[k]);
+    if (best === null || distance.distanceMm < best.distanceMm) best = distance;
+  }
+  return best ?? distanceOf(shape, sides[some]);
+}
+
+function toShape([ax, ay, bx, by]: Line): Flatten.Point | Flatten.Segment {
+  const start = new Flatten.Point(ax, ay);
+  return ax === bx && ay === by ? start : new Flatten.Segment(start, new Flatten.Point(bx, by));
+}
+
+/** From a shape to a side: the first point is the shape's. */
+function distanceOf(shape: Flatten.Point | Flatten.Segment, [ax, ay, bx, by]: Line): Closest {
+  const side = new Flatten.Segment(new Flatten.Point(ax, ay), new Flatten.Point(bx, by));
+  const [distanceMm, { ps, pe }] = shape.distanceTo(side);
+  return { distanceMm, x1: ps.x, y1: ps.y, x2: pe.x, y2: pe.y };
 }
 
 /** Whether a line comes within a distance of the edge. */
@@ -148,7 +196,7 @@ function comesNear({ index, sides }: Outline, withinMm: number, line: Line): boo
 }
 
 /** Distance of all that lies within a radius of a line from the edge; below 0 by how far it reaches beyond. */
-function measure({ polygon, rings }: Outline, line: Line, radius: number): Near {
+function measure(outline: Outline, line: Line, radius: number): Near {
   const [ax, ay, bx, by] = line;
   const start = signed(ax, ay);
   if (ax === bx && ay === by) return near(start, false);
@@ -160,18 +208,12 @@ function measure({ polygon, rings }: Outline, line: Line, radius: number): Near 
   const worst = start.gapMm <= end.gapMm ? start : end;
   if (worst.gapMm < -ROUNDING_MM) return near(worst, false);
   // Both ends are inside: the nearest place may lie between them, or the line may leave the chip and come back.
-  const [distance, { ps, pe }] = polygon.distanceTo(
-    new Flatten.Segment(new Flatten.Point(ax, ay), new Flatten.Point(bx, by)),
-  );
-  const onLine = segmentDistance(ps.x, ps.y, ps.x, ps.y, ...line);
-  const [on, off] = onLine <= segmentDistance(pe.x, pe.y, pe.x, pe.y, ...line) ? [ps, pe] : [pe, ps];
-  return near({ gapMm: distance, x: on.x, y: on.y, edgeX: off.x, edgeY: off.y }, false);
+  const { distanceMm, x1, y1, x2, y2 } = nearestOnEdge(outline, line);
+  return near({ gapMm: distanceMm, x: x1, y: y1, edgeX: x2, edgeY: y2 }, false);
 
   function signed(x: number, y: number) {
-    const [distance, { ps, pe }] = polygon.distanceTo(new Flatten.Point(x, y));
-    const isStart = Math.hypot(ps.x - x, ps.y - y) <= Math.hypot(pe.x - x, pe.y - y);
-    const off = isStart ? pe : ps;
-    return { gapMm: isInside(rings, x, y) ? distance : -distance, x, y, edgeX: off.x, edgeY: off.y };
+    const { distanceMm: distance, x2: edgeX, y2: edgeY } = nearestOnEdge(outline, [x, y, x, y]);
+    return { gapMm: outline.contains(x, y) ? distance : -distance, x, y, edgeX, edgeY };
   }
 
   /** From the painted area (or its centre line, where that is beyond) to the nearest point of the edge. */
@@ -193,18 +235,4 @@ function beyond({ index, sides }: Outline, x: number, y: number, radius: number)
     if (closest.distanceMm < best.distanceMm) best = closest;
   }
   return { gapMm: -best.distanceMm - radius, xMm: x, yMm: y, mark: [x, y, best.x2, best.y2], isEven: false };
-}
-
-/** Even-odd: whether a ray to the right crosses the rings an odd number of times. */
-function isInside(rings: readonly Float64Array[], x: number, y: number): boolean {
-  let inside = false;
-  for (const ring of rings) {
-    for (let k = 0; k + 3 < ring.length; k += 2) {
-      const ay = ring[k + 1];
-      const by = ring[k + 3];
-      if (ay > y === by > y) continue;
-      if (x < ring[k] + ((y - ay) / (by - ay)) * (ring[k + 2] - ring[k])) inside = !inside;
-    }
-  }
-  return inside;
 }

@@ -145,6 +145,10 @@ function toDoubleStroke(
   ]);
   const meets = samples.filter(({ apart }) => apart <= SAME_PLACE_MM).map(({ s }) => s);
   if (meets.length === 0) meets.push(...joinedEnds());
+  // Drawn to meet, but for the rounding of coordinates.
+  if (meets.length === 0) {
+    meets.push(...samples.filter(({ apart }) => apart <= chip.joinWithinMm).map(({ s }) => s));
+  }
   if (meets.length > 0) {
     const first = Math.min(...extremes(meets));
     const last = Math.max(...extremes(meets));

@@ -1,5 +1,7 @@
 import type { Chip } from '../chip/types.ts';
+import { FINE_MM, finePieces } from '../geometry/curve.ts';
 import { endsAtVertex, type Pieces, startsAtVertex } from '../geometry/pieces.ts';
+import { isNextToCurvedEnd } from '../geometry/strip.ts';
 import { type Closest, closestPoints, type Line, nearer } from './closest.ts';
 
 /**
@@ -28,7 +30,7 @@ export function gapBetween(chip: Chip, pieces: Pieces, i: number, j: number): Cl
     }
   }
   if (best !== null && best.distanceMm > 0) return best;
-  const overlap = closestPoints(lineOf(pieces, i), lineOf(pieces, j));
+  const overlap = closestOf(linesOf(pieces, i), linesOf(pieces, j));
   return { ...overlap, distanceMm: Math.min(0, overlap.distanceMm - pieces.half[i] - pieces.half[j]) };
 }
 
@@ -90,10 +92,12 @@ export function paintedEnd(
   return { face: [cx - outY * half, cy + outX * half, cx + outY * half, cy - outX * half], radius: 0 };
 }
 
-/** True where a piece has an end that is cut flat, so that its painted area is not just all within half a width of it. */
+/** True where a piece has an end that is cut flat, or is next to one on a curve, so that its painted area is not just all within half a width of it. */
 export function hasFlatEnd(chip: Chip, pieces: Pieces, i: number): boolean {
-  if (chip.channels[pieces.channel[i]].linecap === 'round') return false;
-  return !startsAtVertex(pieces, i) || !endsAtVertex(pieces, i);
+  const { linecap } = chip.channels[pieces.channel[i]];
+  if (linecap === 'round') return false;
+  if (!startsAtVertex(pieces, i) || !endsAtVertex(pieces, i)) return true;
+  return linecap === 'butt' && isNextToCurvedEnd(pieces, i);
 }
 
 /** Straight sides (with the radius that goes round them) of the painted area of a piece. */
@@ -123,37 +127,74 @@ function gapToPart(chip: Chip, pieces: Pieces, i: number, other: Part): Closest 
   return best as Closest;
 }
 
+/** The piece as straight lines that its curve departs from by no more than FINE_MM. */
+function linesOf(pieces: Pieces, i: number): readonly Line[] {
+  const curve = pieces.curves.get(i);
+  if (curve === undefined) return [lineOf(pieces, i)];
+  let x = pieces.x1[i];
+  let y = pieces.y1[i];
+  return finePieces(curve, FINE_MM).map((fine): Line => {
+    const line: Line = [x, y, fine.x, fine.y];
+    x = fine.x;
+    y = fine.y;
+    return line;
+  });
+}
+
 function partsOf(chip: Chip, pieces: Pieces, i: number): Part[] {
   const { linecap } = chip.channels[pieces.channel[i]];
   const half = pieces.half[i];
   const flatStart = linecap !== 'round' && !startsAtVertex(pieces, i);
   const flatEnd = linecap !== 'round' && !endsAtVertex(pieces, i);
-  if (!flatStart && !flatEnd) return [{ lines: [lineOf(pieces, i)], radius: half, corners: null }];
-  const ux = (pieces.x2[i] - pieces.x1[i]) / pieces.length[i];
-  const uy = (pieces.y2[i] - pieces.y1[i]) / pieces.length[i];
+  const lines = linesOf(pieces, i);
+  // Next to a flat end on a curve round ends would reach beyond it: what they would fill is less than 0.1 µm.
+  const isPlain = linecap === 'butt' && isNextToCurvedEnd(pieces, i);
+  if (!flatStart && !flatEnd && !isPlain) return [{ lines, radius: half, corners: null }];
   const beyond = linecap === 'square' ? half : 0;
-  const ax = pieces.x1[i] - (flatStart ? ux * beyond : 0);
-  const ay = pieces.y1[i] - (flatStart ? uy * beyond : 0);
-  const bx = pieces.x2[i] + (flatEnd ? ux * beyond : 0);
-  const by = pieces.y2[i] + (flatEnd ? uy * beyond : 0);
-  const nx = -uy * half;
-  const ny = ux * half;
-  const corners = [
-    [ax + nx, ay + ny],
-    [bx + nx, by + ny],
-    [bx - nx, by - ny],
-    [ax - nx, ay - ny],
-  ] as const;
-  const parts: Part[] = [
-    {
-      lines: corners.map(([x, y], k) => [x, y, ...corners[(k + 1) % 4]]),
-      radius: 0,
-      corners,
-    },
-  ];
-  if (!flatStart) parts.push(disc(pieces.x1[i], pieces.y1[i], half));
-  if (!flatEnd) parts.push(disc(pieces.x2[i], pieces.y2[i], half));
+  const parts: Part[] = [];
+  lines.forEach((line, k) => {
+    const start = flatStart && k === 0 ? 2 * pieces.centreline[i] : -1;
+    const end = flatEnd && k === lines.length - 1 ? 2 * pieces.centreline[i] + 1 : -1;
+    if (start < 0 && end < 0 && !isPlain) parts.push({ lines: [line], radius: half, corners: null });
+    else addFlatParts(parts, pieces, line, half, beyond, start, end, !isPlain);
+  });
   return parts;
+}
+
+/** A straight line whose area is cut flat at the ends named, square to the channel there; −1: round, if wanted. */
+function addFlatParts(
+  into: Part[],
+  pieces: Pieces,
+  [ax, ay, bx, by]: Line,
+  half: number,
+  beyond: number,
+  start: number,
+  end: number,
+  round: boolean,
+): void {
+  const { outX, outY } = pieces;
+  const length = Math.hypot(bx - ax, by - ay);
+  const ux = (bx - ax) / length;
+  const uy = (by - ay) / length;
+  const [sx, sy] = start < 0 ? [ux, uy] : [-outX[start], -outY[start]];
+  const [ex, ey] = end < 0 ? [ux, uy] : [outX[end], outY[end]];
+  const atStart = start < 0 ? 0 : beyond;
+  const atEnd = end < 0 ? 0 : beyond;
+  const [px, py] = [ax - sx * atStart, ay - sy * atStart];
+  const [qx, qy] = [bx + ex * atEnd, by + ey * atEnd];
+  const corners = [
+    [px - sy * half, py + sx * half],
+    [qx - ey * half, qy + ex * half],
+    [qx + ey * half, qy - ex * half],
+    [px + sy * half, py - sx * half],
+  ] as const;
+  into.push({
+    lines: corners.map(([x, y], k): Line => [x, y, ...corners[(k + 1) % 4]]),
+    radius: 0,
+    corners,
+  });
+  if (round && start < 0) into.push(disc(ax, ay, half));
+  if (round && end < 0) into.push(disc(bx, by, half));
 }
 
 function disc(x: number, y: number, radius: number): Part {
@@ -161,15 +202,7 @@ function disc(x: number, y: number, radius: number): Part {
 }
 
 function gapOfParts(one: Part, two: Part): Closest {
-  let best: Closest | null = null;
-  for (const a of one.lines) {
-    for (const b of two.lines) {
-      const gap = closestPoints(a, b);
-      best = best === null ? gap : nearer(best, gap);
-    }
-  }
-  // Every part has a line.
-  const closest = best as Closest;
+  const closest = closestOf(one.lines, two.lines);
   if (contains(one, two.lines[0]) || contains(two, one.lines[0])) {
     return { ...closest, distanceMm: -closest.distanceMm - one.radius - two.radius };
   }
@@ -184,6 +217,18 @@ function gapOfParts(one: Part, two: Part): Closest {
     x2: x2 - ux * two.radius,
     y2: y2 - uy * two.radius,
   };
+}
+
+/** Of two lists that are not empty. */
+function closestOf(one: readonly Line[], two: readonly Line[]): Closest {
+  let best: Closest | null = null;
+  for (const a of one) {
+    for (const b of two) {
+      const gap = closestPoints(a, b);
+      best = best === null ? gap : nearer(best, gap);
+    }
+  }
+  return best as Closest;
 }
 
 function contains({ corners }: Part, [x, y]: Line): boolean {

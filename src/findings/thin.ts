@@ -1,6 +1,6 @@
 import { LIMIT_SLACK } from '../chip/limits.ts';
 import type { Nearness } from '../geometry/near.ts';
-import type { Pieces } from '../geometry/pieces.ts';
+import { neighbourPiece, type Pieces } from '../geometry/pieces.ts';
 import { distanceToSegment } from '../geometry/segment.ts';
 import { isInPieceStrip } from '../geometry/strip.ts';
 import { closestPoints, type Line, stretchWithin } from './closest.ts';
@@ -105,40 +105,65 @@ function partsFrom(
     { way: Math.abs(to - s), apart: gapTo },
   ]);
   return (
-    onlyGrows(samples, stretch.apartMm, context.chip.joinWithinMm) && partInProportion(context, stretch, s, t)
+    onlyGrows(samples, stretch.apartMm, context.chip.joinWithinMm) &&
+    partInProportion(
+      context,
+      stretch,
+      s,
+      t,
+      samples.reduce((most, sample) => Math.max(most, sample.way), 0),
+    )
   );
 }
 
 /**
  * Two straight arms move apart in proportion to the way from where they part; round a hairpin, or on two rungs of one
- * ladder, they reach their distance at once and keep it. So the distance is compared with that at half the way.
+ * ladder, they reach their distance at once and keep it. So the distance is compared with that at half the way; of arms
+ * that part along a tangent where they have come apart at all, at most `farMm` further on.
  */
 function partInProportion(
   context: FindingContext,
   { a, b, apartMm }: ThinStretch,
   s: number,
   t: number,
+  farMm: number,
 ): boolean {
   const { network } = context;
   const paths = channelPaths(context);
   const route = shortest(paths.routes(paths.arcAt(a, s), paths.arcAt(b, t), apartMm), s, t);
   if (route === null) return false;
-  if (route.kind === 'along') return isProportional((3 * s + t) / 4, (s + 3 * t) / 4);
+  if (route.kind === 'along') return isProportional(s, t, (3 * s + t) / 4, (s + 3 * t) / 4);
   // From a port the sides part at its centre, not at the rim where the way begins; and an end that was carried on begins
   // inside the other's strip, wherever the node is. There it is enough that they only move apart.
   const node = route.vertex;
   const isPort = node >= 0 && node < network.nodeCount && network.nodePort[node] >= 0;
   if (isPort || (node >= 0 && (isCarriedOn(a, route.leaveAt) || isCarriedOn(b, route.enterAt)))) return true;
-  return isProportional((s + route.leaveAt) / 2, (t + route.enterAt) / 2);
+  // Joined a little way from where they part (drawn at rounding), one side's way begins there, as if it had gone on back.
+  const backA = route.leaveAt - Math.sign(s - route.leaveAt) * route.lengthMm;
+  const backB = route.enterAt - Math.sign(t - route.enterAt) * route.lengthMm;
+  for (let times = 1; ; times *= 2) {
+    const onA = route.leaveAt + times * (s - route.leaveAt);
+    const onB = route.enterAt + times * (t - route.enterAt);
+    if (
+      isProportional(onA, onB, (onA + route.leaveAt) / 2, (onB + route.enterAt) / 2) ||
+      isProportional(onA, onB, (onA + backA) / 2, (onB + route.enterAt) / 2) ||
+      isProportional(onA, onB, (onA + route.leaveAt) / 2, (onB + backB) / 2)
+    ) {
+      return true;
+    }
+    const areApart = distanceBetween(onA, onB) > context.chip.joinWithinMm;
+    const step = Math.abs(s - route.leaveAt);
+    if (areApart || step === 0 || (2 * times - 1) * step > farMm) return false;
+  }
 
   function isCarriedOn(centreline: number, position: number): boolean {
     return position < 0 || position > network.trace.near.pieces.centrelineLength[centreline];
   }
 
-  function isProportional(halfS: number, halfT: number): boolean {
+  function isProportional(onA: number, onB: number, halfA: number, halfB: number): boolean {
     // Two centrelines still on each other have not parted at all: one drawn through the other's strip.
-    const apart = distanceBetween(s, t);
-    return apart > context.chip.joinWithinMm && apart >= 1.5 * distanceBetween(halfS, halfT);
+    const apart = distanceBetween(onA, onB);
+    return apart > context.chip.joinWithinMm && apart >= 1.5 * distanceBetween(halfA, halfB);
   }
 
   function distanceBetween(onA: number, onB: number): number {
@@ -223,8 +248,14 @@ function addThinStretches(
 ): void {
   const { chip } = context;
   const halves = pieces.half[i] + pieces.half[j];
-  // The relative slack of a limit, and rounding of coordinates where the limit is nought.
-  const withinMm = halves + limitMm * (1 - LIMIT_SLACK) - (limitMm === 0 ? -1e-9 * halves : 0);
+  // The relative slack of a limit, rounding of coordinates where the limit is nought, and what curves may lie beside their
+  // pieces: a wall round a bend drawn exactly at the limit is not below it.
+  const withinMm =
+    halves +
+    limitMm * (1 - LIMIT_SLACK) -
+    (limitMm === 0 ? -1e-9 * halves : 0) -
+    pieces.bulge[i] -
+    pieces.bulge[j];
   const flat = hasFlatEnd(chip, pieces, i) || hasFlatEnd(chip, pieces, j);
   if (!flat && distanceMm >= withinMm) return;
   if (distanceMm <= chip.joinWithinMm && crossesSquarely(pieces, i, j)) return;
@@ -390,8 +421,8 @@ function facingTest(
   const vx = (pieces.x2[j] - pieces.x1[j]) / pieces.length[j];
   const vy = (pieces.y2[j] - pieces.y1[j]) / pieces.length[j];
   const cuts: number[] = [];
-  const start = sideOf(pieces.x1[j], pieces.y1[j], -vx, -vy, neighbour(pieces, j, -1));
-  const end = sideOf(pieces.x2[j], pieces.y2[j], vx, vy, neighbour(pieces, j, 1));
+  const start = sideOf(pieces.x1[j], pieces.y1[j], -vx, -vy, neighbourPiece(pieces, j, -1));
+  const end = sideOf(pieces.x2[j], pieces.y2[j], vx, vy, neighbourPiece(pieces, j, 1));
   return { cuts, at: (s) => start(s) && end(s) };
 
   /** One end of j: out of it points (ox, oy), and its neighbour there goes on in its own direction. */
@@ -415,13 +446,4 @@ function facingTest(
     if (Math.abs(slope) > 1e-12) cuts.push(pieces.start[i] - atStart / slope);
     return (s) => atStart + slope * (s - pieces.start[i]);
   }
-}
-
-/** The piece before (−1) or after (1) on the centreline; −1 at an end. */
-function neighbour(pieces: Pieces, j: number, step: 1 | -1): number {
-  const c = pieces.centreline[j];
-  const first = pieces.firstPiece[c];
-  const count = pieces.firstPiece[c + 1] - first;
-  if (pieces.centrelineClosed[c] === 1) return count > 1 ? first + ((j - first + step + count) % count) : -1;
-  return j + step < first || j + step >= first + count ? -1 : j + step;
 }

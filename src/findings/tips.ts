@@ -109,13 +109,12 @@ export function endPlace({ trace }: Network, end: number) {
   const c = end >> 1;
   const atStart = (end & 1) === 0;
   const piece = atStart ? pieces.firstPiece[c] : pieces.firstPiece[c + 1] - 1;
-  const sign = atStart ? -1 : 1;
   return {
     piece,
     x: atStart ? pieces.x1[piece] : pieces.x2[piece],
     y: atStart ? pieces.y1[piece] : pieces.y2[piece],
-    outX: (sign * (pieces.x2[piece] - pieces.x1[piece])) / pieces.length[piece],
-    outY: (sign * (pieces.y2[piece] - pieces.y1[piece])) / pieces.length[piece],
+    outX: pieces.outX[end],
+    outY: pieces.outY[end],
     s: atStart ? 0 : pieces.centrelineLength[c],
   };
 }

@@ -77,10 +77,12 @@ function slenderWalls(context: FindingContext): readonly ThinWall[] {
     ({ centrelineA }) => centrelineA,
     ({ centrelineB }) => centrelineB,
   );
+  const { bulge } = context.network.trace.near.pieces;
   return findThinWalls(context, nearPairsWithin(context, widest), limitOf).filter((wall) => {
     const minimum = minWallMm(chip, 2 * wall.limitMm);
+    const surelyMm = wall.gapMm + bulge[wall.pieceA] + bulge[wall.pieceB];
     return (
-      !(minimum !== null && isBelow(wall.gapMm, minimum.value)) &&
+      !(minimum !== null && isBelow(surelyMm, minimum.value)) &&
       wall.gapMm > 0 &&
       !replacesWall(context, wall) &&
       // One fault, one finding: a wall that is too thin somewhere is not slender as well.

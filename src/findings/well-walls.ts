@@ -1,4 +1,5 @@
 import { LIMIT_SLACK } from '../chip/limits.ts';
+import { FINE_MM } from '../geometry/curve.ts';
 import { type Closest, type Line, stretchWithin } from './closest.ts';
 import type { FindingContext } from './context.ts';
 import { nearMisses } from './misses.ts';
@@ -39,13 +40,14 @@ export function findWellWalls(
     const r = port.radiusMm + widest;
     const close: { piece: number; gap: Closest; from: number; to: number }[] = [];
     for (const i of index.search(port.xMm - r, port.yMm - r, port.xMm + r, port.yMm + r)) {
-      const limit = limits[pieces.channel[i]] * (1 - LIMIT_SLACK);
+      // A curve may lie beside its pieces: round a well exactly at the limit it is not below it.
+      const limit = limits[pieces.channel[i]] * (1 - LIMIT_SLACK) - Math.min(pieces.bulge[i], FINE_MM);
       const gap = gapToHole(chip, pieces, i, port);
       if (gap.distanceMm >= limit) continue;
       const within = stretchWithin(
         lineOf(pieces, i),
         [port.xMm, port.yMm, port.xMm, port.yMm],
-        port.radiusMm + pieces.half[i] + limit,
+        port.radiusMm + pieces.half[i] + limit + pieces.bulge[i],
       ) ?? [0, 0];
       close.push({
         piece: i,

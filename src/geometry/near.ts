@@ -12,7 +12,7 @@ const TOUCH_MM = 0.001;
 /** The one spatial index over all pieces, and the one list of pairs of pieces that come near each other. */
 export interface Nearness {
   readonly pieces: Pieces;
-  /** Boxes of the painted pieces (strip and cap), in piece order. Null when there is no piece. */
+  /** Boxes of the painted pieces (strip, cap and bulge), in piece order. Null when there is no piece. */
   readonly index: Flatbush | null;
   /** Pairs are listed when their strips come nearer than this. */
   readonly withinMm: number;
@@ -20,7 +20,7 @@ export interface Nearness {
   /** pairA[k] < pairB[k]; same plane; not consecutive on one centreline. */
   readonly pairA: Int32Array;
   readonly pairB: Int32Array;
-  /** Distance between the two pieces' centrelines; a pair's strips are nearer than withinMm. */
+  /** Distance between the two pieces' centrelines; a pair's strips are nearer than withinMm (and what their curves bulge). */
   readonly pairDistance: Float64Array;
   /** Pairs of piece i are pairOf[firstPair[i]] … pairOf[firstPair[i + 1] − 1]. */
   readonly firstPair: Int32Array;
@@ -53,7 +53,7 @@ export function findNearPairs(
   const maxY = new Float64Array(n);
   const index = new Flatbush(n);
   for (let i = 0; i < n; i++) {
-    const margin = pieces.half[i] * capFactor(i);
+    const margin = pieces.half[i] * capFactor(i) + pieces.bulge[i];
     minX[i] = Math.min(pieces.x1[i], pieces.x2[i]) - margin;
     minY[i] = Math.min(pieces.y1[i], pieces.y2[i]) - margin;
     maxX[i] = Math.max(pieces.x1[i], pieces.x2[i]) + margin;
@@ -80,7 +80,8 @@ export function findNearPairs(
         pieces.x2[j],
         pieces.y2[j],
       );
-      if (distance > pieces.half[i] * capFactor(i) + pieces.half[j] * capFactor(j) + withinMm) continue;
+      const strips = pieces.half[i] * capFactor(i) + pieces.half[j] * capFactor(j);
+      if (distance > strips + withinMm + pieces.bulge[i] + pieces.bulge[j]) continue;
       if (isOwnBend(pieces, i, j, distance)) continue;
       if (pairCount === pairA.length) {
         if (pairCount >= MAX_NEAR_PAIRS) {

@@ -1,4 +1,4 @@
-import { endsAtVertex, type Pieces, startsAtVertex } from './pieces.ts';
+import { endsAtVertex, goesOnSmoothly, neighbourPiece, type Pieces, startsAtVertex } from './pieces.ts';
 
 /**
  * The strip of a channel: the etched area within half its width of the centreline, round at inner vertices, square at
@@ -30,7 +30,13 @@ export function isInPieceStrip(
   const uy = (by - ay) / length;
   const along = (x - ax) * ux + (y - ay) * uy;
   const across = (y - ay) * ux - (x - ax) * uy;
-  if (Math.abs(across) <= half && along >= -slackMm && along <= length + slackMm) return true;
+  if (pieces.bulge[piece] > 0) {
+    const { startOut, endOut } = cutEnds(pieces, piece, ends);
+    const atStart = startOut === null ? -along : (x - ax) * startOut[0] + (y - ay) * startOut[1];
+    const atEnd = endOut === null ? along - length : (x - bx) * endOut[0] + (y - by) * endOut[1];
+    if (Math.abs(across) <= half && atStart <= slackMm && atEnd <= slackMm) return true;
+    if ((along < 0 ? startOut : endOut) !== null) return false;
+  } else if (Math.abs(across) <= half && along >= -slackMm && along <= length + slackMm) return true;
   if (along < 0 && roundAtStart(pieces, piece, ends)) return Math.hypot(x - ax, y - ay) <= half;
   if (along > length && roundAtEnd(pieces, piece, ends)) return Math.hypot(x - bx, y - by) <= half;
   return false;
@@ -60,12 +66,78 @@ export function addStripStretches(
     half: pieces.half[piece],
     startIsRound: roundAtStart(pieces, piece, ends),
     endIsRound: roundAtEnd(pieces, piece, ends),
+    ...(pieces.bulge[piece] > 0 ? cutEnds(pieces, piece, ends) : STRAIGHT),
   };
   addShapeStretches(into, shape, ax, ay, bx, by, slackMm);
 }
 
+/** Directions out of a piece at ends that are cut straight, but not square to the piece; null where square, or round. */
+export interface CutEnds {
+  readonly startOut: readonly [number, number] | null;
+  readonly endOut: readonly [number, number] | null;
+}
+
+export const STRAIGHT: CutEnds = { startOut: null, endOut: null };
+
+/**
+ * A curve's strip ends square to the curve, not to its last chord. Next to that end the pieces are mitred: a disc at a
+ * place where the curve was only cut would reach beyond the end.
+ */
+function cutEnds(pieces: Pieces, piece: number, ends: StripEnds | null): CutEnds {
+  const { outX, outY } = pieces;
+  const end = 2 * pieces.centreline[piece];
+  const isMitred = isNextToCurvedEnd(pieces, piece);
+  return {
+    startOut: startsAtVertex(pieces, piece)
+      ? mitre(pieces, piece, isMitred ? neighbourPiece(pieces, piece, -1) : -1, -1)
+      : roundAtStart(pieces, piece, ends)
+        ? null
+        : [outX[end], outY[end]],
+    endOut: endsAtVertex(pieces, piece)
+      ? mitre(pieces, piece, isMitred ? neighbourPiece(pieces, piece, 1) : -1, 1)
+      : roundAtEnd(pieces, piece, ends)
+        ? null
+        : [outX[end + 1], outY[end + 1]],
+  };
+}
+
+/** The direction half-way between two pieces that go on smoothly in each other. */
+function mitre(pieces: Pieces, piece: number, next: number, sign: 1 | -1): readonly [number, number] | null {
+  if (next < 0 || !goesOnSmoothly(pieces, piece, next) || pieces.bendRadius[next] <= pieces.half[next])
+    return null;
+  const x =
+    (pieces.x2[piece] - pieces.x1[piece]) / pieces.length[piece] +
+    (pieces.x2[next] - pieces.x1[next]) / pieces.length[next];
+  const y =
+    (pieces.y2[piece] - pieces.y1[piece]) / pieces.length[piece] +
+    (pieces.y2[next] - pieces.y1[next]) / pieces.length[next];
+  const length = Math.hypot(x, y) * sign;
+  return [x / length, y / length];
+}
+
+/** Whether a piece lies within half a width of an open end of its centreline, and all between is one curve, not a tight one. */
+export function isNextToCurvedEnd(pieces: Pieces, piece: number): boolean {
+  const c = pieces.centreline[piece];
+  if (pieces.bulge[piece] === 0 || pieces.centrelineClosed[c] === 1) return false;
+  const half = pieces.half[piece];
+  const before = pieces.start[piece];
+  const after = pieces.centrelineLength[c] - before - pieces.length[piece];
+  return (
+    (before < half && isOneCurve(pieces, pieces.firstPiece[c], piece)) ||
+    (after < half && isOneCurve(pieces, piece, pieces.firstPiece[c + 1] - 1))
+  );
+}
+
+function isOneCurve(pieces: Pieces, from: number, to: number): boolean {
+  for (let k = from; k <= to; k++) {
+    if (pieces.bendRadius[k] <= pieces.half[k]) return false;
+    if (k > from && !goesOnSmoothly(pieces, k - 1, k)) return false;
+  }
+  return true;
+}
+
 /** One straight piece p→q of a strip: a rectangle, with a disc at each end that is an inner vertex or a seam. */
-export interface PieceShape {
+export interface PieceShape extends CutEnds {
   readonly px: number;
   readonly py: number;
   readonly qx: number;
@@ -88,7 +160,7 @@ export function addShapeStretches(
 ): void {
   const span = Math.hypot(bx - ax, by - ay);
   if (span === 0) return;
-  const { px, py, qx, qy, length, half, startIsRound, endIsRound } = shape;
+  const { px, py, qx, qy, length, half, startIsRound, endIsRound, startOut, endOut } = shape;
   const ux = (qx - px) / length;
   const uy = (qy - py) / length;
   const dx = (bx - ax) / span;
@@ -102,21 +174,45 @@ export function addShapeStretches(
   const lateral = stretchWithin(v0, dv, -half, half, span);
   if (lateral !== null) {
     const low = -(startIsRound ? TINY_MM : slackMm);
-    const high = length + (endIsRound ? TINY_MM : slackMm);
-    const along = stretchWithin(u0, du, low, high, span);
+    const high = endIsRound ? TINY_MM : slackMm;
+    const along = between(low, high);
     if (along !== null) {
       const from = Math.max(lateral[0], along[0]);
       let to = Math.min(lateral[1], along[1]);
       const leavesThroughEnd = along[1] < lateral[1];
       if (leavesThroughEnd) {
-        const exact = stretchWithin(u0, du, startIsRound ? low : 0, endIsRound ? high : length, span);
+        const exact = between(startIsRound ? low : 0, endIsRound ? high : 0);
         to = exact === null ? from : Math.max(from, Math.min(to, exact[1]));
       }
       if (to >= from) into.push(from, to);
     }
   }
-  if (startIsRound) addDiscStretch(into, px, py, half, ax, ay, dx, dy, span);
-  if (endIsRound) addDiscStretch(into, qx, qy, half, ax, ay, dx, dy, span);
+  if (startIsRound && startOut === null) addDiscStretch(into, px, py, half, ax, ay, dx, dy, span);
+  if (endIsRound && endOut === null) addDiscStretch(into, qx, qy, half, ax, ay, dx, dy, span);
+
+  /** Not before the first end by more than −low, nor beyond the second by more than high. */
+  function between(low: number, high: number): readonly [number, number] | null {
+    if (startOut === null && endOut === null) return stretchWithin(u0, du, low, length + high, span);
+    const after =
+      startOut === null
+        ? stretchWithin(u0, du, low, Number.POSITIVE_INFINITY, span)
+        : beside(startOut, px, py, -low);
+    const before =
+      endOut === null
+        ? stretchWithin(u0, du, Number.NEGATIVE_INFINITY, length + high, span)
+        : beside(endOut, qx, qy, high);
+    if (after === null || before === null) return null;
+    const from = Math.max(after[0], before[0]);
+    const to = Math.min(after[1], before[1]);
+    return from <= to ? [from, to] : null;
+  }
+
+  /** Beyond (x, y) in a direction by no more than `most`. */
+  function beside(out: readonly [number, number], x: number, y: number, most: number) {
+    const w0 = (ax - x) * out[0] + (ay - y) * out[1];
+    const dw = dx * out[0] + dy * out[1];
+    return stretchWithin(w0, dw, Number.NEGATIVE_INFINITY, most, span);
+  }
 }
 
 /** How far the stretches, taken together, reach without a gap from `from` on. Sorts `stretches` by start. */

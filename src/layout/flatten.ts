@@ -8,6 +8,7 @@
  *   until the estimated loss, (p − c)/2 or (p − c)/3, is within the tolerance.
  * Cost: linear in the pieces. A cusp, where no piece is straight enough, ends at a millionth of the curve.
  */
+import { type Curve, type Ellipse, ellipseX, ellipseY } from '../geometry/curve.ts';
 import type { Matrix, PathCommand } from '../svg/types.ts';
 import { ValueError } from '../svg/value-error.ts';
 
@@ -16,6 +17,8 @@ export interface Subpath {
   readonly points: Float64Array;
   /** One per piece: radius of curvature there, 0 for a straight piece. */
   readonly bendRadius: Float64Array;
+  /** The curve each piece was cut from, null for a straight one; null when all are straight. */
+  readonly curves: readonly (Curve | null)[] | null;
   /** Drawn closed (z), and encloses something. */
   readonly closed: boolean;
   /** First and last point are the same, whether closed or drawn so. */
@@ -75,6 +78,7 @@ class Polyline {
   /** The subpath being drawn. */
   #points: number[] = [];
   #radii: number[] = [];
+  #curves: (Curve | null)[] = [];
   /** In the path's own units: where the pen is, and where the subpath began. */
   #x = 0;
   #y = 0;
@@ -95,7 +99,7 @@ class Polyline {
         break;
       case 'line':
         this.#begin();
-        this.#add(this.#mapX(command.x, command.y), this.#mapY(command.x, command.y), 0);
+        this.#add(this.#mapX(command.x, command.y), this.#mapY(command.x, command.y), 0, null);
         break;
       case 'cubic':
         this.#begin();
@@ -128,13 +132,14 @@ class Polyline {
   endSubpath(how: 'open' | 'closed'): void {
     const points = this.#points;
     if (points.length > 0) {
-      if (how === 'closed') this.#add(points[0], points[1], 0);
-      const made = tidy(points, this.#radii, how);
+      if (how === 'closed') this.#add(points[0], points[1], 0, null);
+      const made = tidy(points, this.#radii, this.#curves, how);
       if (made === null) this.zeroLength++;
       else this.subpaths.push(made);
     } else if (how === 'closed') this.zeroLength++;
     this.#points = [];
     this.#radii = [];
+    this.#curves = [];
   }
 
   /** The first drawing command after a move or a close starts a subpath where the pen is. */
@@ -145,7 +150,7 @@ class Polyline {
     this.#points.push(this.#mapX(this.#x, this.#y), this.#mapY(this.#x, this.#y));
   }
 
-  #add(x: number, y: number, radius: number): void {
+  #add(x: number, y: number, radius: number, curve: Curve | null): void {
     if (--this.#budget.piecesLeft < 0) {
       throw new ValueError(
         `the drawing has more than ${MAX_PIECES} segments (the limit); split or simplify it`,
@@ -153,6 +158,7 @@ class Polyline {
     }
     this.#points.push(x, y);
     this.#radii.push(radius);
+    this.#curves.push(curve);
   }
 
   #mapX(x: number, y: number): number {
@@ -186,7 +192,9 @@ class Polyline {
     const chord = length(x3 - x0, y3 - y0);
     const polygon = length(x1 - x0, y1 - y0) + length(x2 - x1, y2 - y1) + length(x3 - x2, y3 - y2);
     if (polygon - chord <= LOSS * (polygon + chord) || polygon <= smallest) {
-      this.#add(x3, y3, middleRadius(x0, y0, x1, y1, x2, y2, x3, y3, chord));
+      const points = [x0, y0, x1, y1, x2, y2, x3, y3];
+      const curve = polygon > chord ? ({ kind: 'cubic', points } as const) : null;
+      this.#add(x3, y3, middleRadius(x0, y0, x1, y1, x2, y2, x3, y3, chord), curve);
       return;
     }
     const ax = (x0 + x1) / 2;
@@ -211,7 +219,7 @@ class Polyline {
     const arc = centreForm(this.#x, this.#y, command);
     if (arc === 'nothing') return;
     if (arc === 'line') {
-      this.#add(endX, endY, 0);
+      this.#add(endX, endY, 0, null);
       return;
     }
     const [a, b, c, d] = this.#matrix;
@@ -239,11 +247,14 @@ class Polyline {
   #circleArc(circle: Ellipse, from: number, sweep: number, endX: number, endY: number): void {
     const radius = Math.sqrt((circle.ux ** 2 + circle.uy ** 2 + circle.vx ** 2 + circle.vy ** 2) / 2);
     const pieces = Math.max(1, Math.ceil(Math.abs(sweep) / MAX_ARC_ANGLE));
+    let last = from;
     for (let i = 1; i < pieces; i++) {
       const t = from + (sweep * i) / pieces;
-      this.#add(ellipseX(circle, t), ellipseY(circle, t), radius);
+      const curve = { kind: 'arc', ellipse: circle, from: last, to: t } as const;
+      this.#add(ellipseX(circle, t), ellipseY(circle, t), radius, curve);
+      last = t;
     }
-    this.#add(endX, endY, radius);
+    this.#add(endX, endY, radius, { kind: 'arc', ellipse: circle, from: last, to: from + sweep });
   }
 
   #ellipsePieces(
@@ -264,22 +275,13 @@ class Polyline {
     const chord = length(x1 - x0, y1 - y0);
     const legs = length(kx - x0, ky - y0) + length(x1 - kx, y1 - ky);
     if (legs - chord <= LOSS * (2 * chord + legs) || legs <= smallest) {
-      this.#add(end?.[0] ?? x1, end?.[1] ?? y1, ellipseRadius(e, middle, chord));
+      const curve = { kind: 'arc', ellipse: e, from, to } as const;
+      this.#add(end?.[0] ?? x1, end?.[1] ?? y1, ellipseRadius(e, middle, chord), curve);
       return;
     }
     this.#ellipsePieces(e, from, middle, smallest, null);
     this.#ellipsePieces(e, middle, to, smallest, end);
   }
-}
-
-/** P(t) = (cx, cy) + (ux, uy) cos t + (vx, vy) sin t: any image of a circle under a 2 × 3 matrix. */
-interface Ellipse {
-  readonly cx: number;
-  readonly cy: number;
-  readonly ux: number;
-  readonly uy: number;
-  readonly vx: number;
-  readonly vy: number;
 }
 
 interface CentreForm extends Ellipse {
@@ -340,14 +342,6 @@ function isCircle({ ux, uy, vx, vy }: Ellipse): boolean {
   return Math.abs(u - v) <= 2e-6 * (u + v) && Math.abs(ux * vx + uy * vy) <= 1e-6 * (u + v);
 }
 
-function ellipseX(e: Ellipse, t: number): number {
-  return e.cx + e.ux * Math.cos(t) + e.vx * Math.sin(t);
-}
-
-function ellipseY(e: Ellipse, t: number): number {
-  return e.cy + e.uy * Math.cos(t) + e.vy * Math.sin(t);
-}
-
 /** |P′|³ / |P′ × P″|, where P′ × P″ = u × v everywhere on the ellipse. */
 function ellipseRadius(e: Ellipse, t: number, chord: number): number {
   const dx = e.vx * Math.cos(t) - e.ux * Math.sin(t);
@@ -391,7 +385,12 @@ function within(coordinate: number): number {
  * Drops points that repeat the one before (to rounding), makes ends that meet exactly the same, and turns a closed path
  * of two points into the line that it is. Null when no length is left.
  */
-function tidy(points: number[], radii: readonly number[], how: 'open' | 'closed'): Subpath | null {
+function tidy(
+  points: number[],
+  radii: readonly number[],
+  curves: readonly (Curve | null)[],
+  how: 'open' | 'closed',
+): Subpath | null {
   const { extent, largest } = measure(points);
   // Rounding of coordinates as large as these, and of as small a path.
   const same = 1e-12 * extent + 4 * Number.EPSILON * largest;
@@ -405,6 +404,7 @@ function tidy(points: number[], radii: readonly number[], how: 'open' | 'closed'
   }
   const kept: number[] = [points[0], points[1]];
   const keptRadii: number[] = [];
+  const keptCurves: (Curve | null)[] = [];
   for (let i = 1; i < points.length / 2; i++) {
     const x = points[2 * i];
     const y = points[2 * i + 1];
@@ -414,15 +414,19 @@ function tidy(points: number[], radii: readonly number[], how: 'open' | 'closed'
     if (length(x - kept[kept.length - 2], y - kept[kept.length - 1]) > tolerance) {
       kept.push(x, y);
       keptRadii.push(radii[i - 1]);
+      keptCurves.push(curves[i - 1]);
     } else if (isEnd && kept.length > 2) {
       // The true end stays; the point before gives way, and so does one that then coincides with the end.
       let radius = 0;
+      let curve: Curve | null = null;
       do {
         kept.length -= 2;
         radius = keptRadii.pop() ?? 0;
+        curve = keptCurves.pop() ?? null;
       } while (kept.length > 2 && length(x - kept[kept.length - 2], y - kept[kept.length - 1]) <= same);
       kept.push(x, y);
       keptRadii.push(radius);
+      keptCurves.push(curve);
     }
   }
   if (kept.length < 4) return null;
@@ -430,10 +434,12 @@ function tidy(points: number[], radii: readonly number[], how: 'open' | 'closed'
   if (isThereAndBack && how === 'closed') {
     kept.length = 4;
     keptRadii.length = 1;
+    keptCurves.length = 1;
   }
   return {
     points: Float64Array.from(kept),
     bendRadius: Float64Array.from(keptRadii),
+    curves: keptCurves.some((curve) => curve !== null) ? keptCurves : null,
     closed: how === 'closed' && !isThereAndBack,
     endsMeet: endsMeet && !(isThereAndBack && how === 'closed'),
   };

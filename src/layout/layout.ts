@@ -167,7 +167,12 @@ function toStroke(shape: Shape, drawn: Drawn, flat: Flattened, laying: Laying): 
     ...drawn,
     width: strokeWidth(shape, laying),
     linecap: shape.style.linecap,
-    centrelines: flat.subpaths.map(({ points, closed, bendRadius }) => ({ points, closed, bendRadius })),
+    centrelines: flat.subpaths.map(({ points, closed, bendRadius, curves }) => ({
+      points,
+      closed,
+      bendRadius,
+      curves,
+    })),
     dataDepth: shape.dataDepth ?? enclosingOf(shape, laying).dataDepth,
     dataChannel: shape.dataChannel,
     disguises: disguisesOf(shape, flat),
@@ -239,10 +244,13 @@ function toIgnored(shape: Shape, drawn: Drawn, laying: Laying, reason: string): 
 }
 
 function outlineOf({ dataChannel }: Shape, drawn: Drawn, flat: Flattened, stroked: boolean): Outline {
-  const rings = flat.subpaths.map((subpath) => subpath.points);
-  return { kind: 'outline', ...drawn, rings, stroked, dataChannel };
+  return { kind: 'outline', ...drawn, ...ringsOf(flat), stroked, dataChannel };
 }
 
 function ignoredOf(drawn: Drawn, flat: Flattened, reason: string): Ignored {
-  return { kind: 'ignored', ...drawn, reason, rings: flat.subpaths.map((subpath) => subpath.points) };
+  return { kind: 'ignored', ...drawn, reason, ...ringsOf(flat) };
+}
+
+function ringsOf({ subpaths }: Flattened): Pick<Outline, 'rings' | 'ringCurves'> {
+  return { rings: subpaths.map(({ points }) => points), ringCurves: subpaths.map(({ curves }) => curves) };
 }

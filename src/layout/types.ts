@@ -5,12 +5,16 @@ import type { Undrawn } from '../svg/types.ts';
  * Curves are already cut into straight pieces; each piece keeps its curve's bend radius.
  */
 
+import type { Curve } from '../geometry/curve.ts';
+
 export interface Centreline {
   /** x0 y0 x1 y1 … ; consecutive points differ; a closed centreline repeats its first point at the end. */
   readonly points: Float64Array;
   readonly closed: boolean;
   /** One per piece (points − 1): the curve's radius of curvature there, 0 for a straight piece. */
   readonly bendRadius: Float64Array;
+  /** The curve that each piece was cut from, null for a straight one; null when all are straight. */
+  readonly curves: readonly (Curve | null)[] | null;
 }
 
 /** What every drawn thing carries, so that names and findings can point into the drawing. */
@@ -50,6 +54,8 @@ export interface Hole extends Drawn {
 export interface Outline extends Drawn {
   readonly kind: 'outline';
   readonly rings: readonly Float64Array[];
+  /** The curves of each ring, as a centreline's; left out where all are straight. */
+  readonly ringCurves?: readonly (readonly (Curve | null)[] | null)[];
   readonly stroked: boolean;
   /** Said to be a channel (`data-channel`), but without a stroke it has no width. */
   readonly dataChannel: boolean;
@@ -61,6 +67,8 @@ export interface Ignored extends Drawn {
   /** text, image, dashed stroke, fill … : the key in the count of ignored shapes. */
   readonly reason: string;
   readonly rings: readonly Float64Array[];
+  /** The curves of each ring, as a centreline's; left out where all are straight. */
+  readonly ringCurves?: readonly (readonly (Curve | null)[] | null)[];
 }
 
 export type LayoutItem = Stroke | Hole | Outline | Ignored;

@@ -1,6 +1,4 @@
 import type { Chip } from '../chip/types.ts';
-import { findNearPairs } from '../geometry/near.ts';
-import { toPieces } from '../geometry/pieces.ts';
 import type { Bundles } from './bundles.ts';
 import { type Draft, END_FREE, END_IN_PORT, Marks, NodeUnion, pointAt, toEnds } from './draft.ts';
 import { addDuctJoints, type DuctJoints } from './duct-joints.ts';
@@ -9,6 +7,7 @@ import { isEqualDuct } from './equal-ducts.ts';
 import { JointTally } from './joint-types.ts';
 import { markMeetings } from './meetings.ts';
 import { nameNodes, nameReach, nameSegment } from './names.ts';
+import { findNearPieces } from './near-pieces.ts';
 import { classifyNodes, type NodeJoints } from './node-joints.ts';
 import { type Kept, leaveOutEndPieces } from './overshoot.ts';
 import { type Arcs, type Reaches, toArcs, toReaches } from './reaches.ts';
@@ -25,13 +24,8 @@ import { markWells } from './wells.ts';
  * the pairs of pieces that really come near each other.
  */
 export function buildNetwork(chip: Chip): Network {
-  const pieces = toPieces(chip.channels);
-  const near = findNearPairs(
-    pieces,
-    nearnessMm(chip),
-    (piece) => (chip.channels[pieces.channel[piece]].linecap === 'square' ? Math.SQRT2 : 1),
-    chip.file,
-  );
+  const near = findNearPieces(chip, nearnessMm(chip));
+  const { pieces } = near;
   const draft: Draft = {
     chip,
     near,

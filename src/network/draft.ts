@@ -115,18 +115,17 @@ export function toEnds(pieces: Pieces): CentrelineEnds {
   for (let c = 0; c < pieces.centrelineCount; c++) {
     const first = pieces.firstPiece[c];
     const last = pieces.firstPiece[c + 1] - 1;
-    setEnd(ends, 2 * c, pieces.x1[first], pieces.y1[first], pieces.x2[first], pieces.y2[first]);
-    setEnd(ends, 2 * c + 1, pieces.x2[last], pieces.y2[last], pieces.x1[last], pieces.y1[last]);
+    setEnd(ends, 2 * c, pieces, pieces.x1[first], pieces.y1[first]);
+    setEnd(ends, 2 * c + 1, pieces, pieces.x2[last], pieces.y2[last]);
   }
   return ends;
 }
 
-function setEnd(ends: CentrelineEnds, e: number, x: number, y: number, innerX: number, innerY: number): void {
-  const length = Math.hypot(x - innerX, y - innerY);
+function setEnd(ends: CentrelineEnds, e: number, pieces: Pieces, x: number, y: number): void {
   ends.x[e] = x;
   ends.y[e] = y;
-  ends.outX[e] = (x - innerX) / length;
-  ends.outY[e] = (y - innerY) / length;
+  ends.outX[e] = pieces.outX[e];
+  ends.outY[e] = pieces.outY[e];
   ends.tipX[e] = x;
   ends.tipY[e] = y;
 }

@@ -5,6 +5,7 @@ import {
   type PieceShape,
   roundAtEnd,
   roundAtStart,
+  STRAIGHT,
   type StripEnds,
 } from '../geometry/strip.ts';
 import { type Draft, pointAt } from './draft.ts';
@@ -45,6 +46,10 @@ export class KeptStrips {
       return;
     }
     if (to <= start || from >= end) return;
+    if (pieces.bulge[piece] > 0 && (growsAtStart || growsAtEnd)) {
+      this.addBesideCurve(into, piece, growsAtStart, growsAtEnd, ax, ay, bx, by);
+      return;
+    }
     const low = startMoves ? from : start;
     const high = endMoves ? to : end;
     const { seam } = this.ends;
@@ -61,6 +66,38 @@ export class KeptStrips {
     const dy = ends.tipY[end] - ends.y[end];
     const along = dx * ends.outX[end] + dy * ends.outY[end];
     return along > 0 && Math.abs(dx * ends.outY[end] - dy * ends.outX[end]) <= slackMm;
+  }
+
+  /** A curve carried on straight turns a little where it is: its piece and what was carried on are two straight pieces. */
+  private addBesideCurve(
+    into: number[],
+    piece: number,
+    growsAtStart: boolean,
+    growsAtEnd: boolean,
+    ax: number,
+    ay: number,
+    bx: number,
+    by: number,
+  ): void {
+    const { pieces } = this.draft;
+    const c = pieces.centreline[piece];
+    const start = pieces.start[piece];
+    const end = start + pieces.length[piece];
+    const low = growsAtStart ? start : Math.max(start, this.kept.from[c]);
+    const high = growsAtEnd ? end : Math.min(end, this.kept.to[c]);
+    this.addShape(into, c, low, high, ax, ay, bx, by, {
+      startIsRound: growsAtStart || (low === start && roundAtStart(pieces, piece, this.ends)),
+      endIsRound: growsAtEnd || (high === end && roundAtEnd(pieces, piece, this.ends)),
+    });
+    const { seam } = this.ends;
+    if (growsAtStart) {
+      const startIsRound = seam[2 * c] === 1;
+      this.addShape(into, c, this.kept.from[c], start, ax, ay, bx, by, { startIsRound, endIsRound: true });
+    }
+    if (growsAtEnd) {
+      const endIsRound = seam[2 * c + 1] === 1;
+      this.addShape(into, c, end, this.kept.to[c], ax, ay, bx, by, { startIsRound: true, endIsRound });
+    }
   }
 
   /** The straight piece of a centreline between two positions. */
@@ -83,7 +120,7 @@ export class KeptStrips {
     const length = Math.hypot(q.x - p.x, q.y - p.y);
     if (length === 0) return;
     const half = draft.pieces.half[pieceAt(draft.pieces, c, Math.max(0, from))];
-    const shape: PieceShape = { px: p.x, py: p.y, qx: q.x, qy: q.y, length, half, ...round };
+    const shape: PieceShape = { px: p.x, py: p.y, qx: q.x, qy: q.y, length, half, ...round, ...STRAIGHT };
     addShapeStretches(into, shape, ax, ay, bx, by, draft.slackMm);
   }
 }

@@ -1,11 +1,18 @@
-import { endsAtVertex, startsAtVertex } from '../geometry/pieces.ts';
+import {
+  endsAtVertex,
+  goesOnSmoothly,
+  neighbourPiece,
+  type Pieces,
+  startsAtVertex,
+} from '../geometry/pieces.ts';
 import { distanceToSegment, nearestParameter } from '../geometry/segment.ts';
 import type { Draft } from './draft.ts';
 
 /**
  * Rule 2: two centrelines, or two stretches of one, join where they meet or cross, drawn vertex or not.
  *
- * A proper crossing is computed exactly. An inner vertex within slack of another piece touches it. The ends of channels
+ * A proper crossing is computed exactly. An inner vertex within slack of another piece touches it; of the vertices that a
+ * curve was cut at only the one where it comes nearest. The ends of channels
  * are not looked at here unless they lie on the other centreline to the last bit: rule 3 carries them on to the exact
  * place, so that slack never enters a length.
  */
@@ -57,7 +64,51 @@ function markTouch(draft: Draft, i: number, s: number, x: number, y: number, j: 
   const bx = pieces.x2[j];
   const by = pieces.y2[j];
   if (distanceToSegment(x, y, ax, ay, bx, by) > slackMm) return;
-  addMeeting(draft, i, s, j, nearestParameter(x, y, ax, ay, bx, by));
+  const t = nearestParameter(x, y, ax, ay, bx, by);
+  const awayX = x - (ax + t * (bx - ax));
+  const awayY = y - (ay + t * (by - ay));
+  if (isPassedOnCurve(pieces, i, s, j, awayX, awayY)) return;
+  addMeeting(draft, i, s, j, t);
+}
+
+/** Nearer than this a vertex is on a piece: which way the distance grows is only rounding. */
+const ON_IT_MM = 1e-9;
+
+/** Two pieces that differ by less in direction lie on each other. */
+const SAME_DIRECTION_SINE = 1e-6;
+
+/**
+ * Whether the vertex at one end of piece i (s = 0 or 1) is but a point of a curve that is on its way to or from piece j.
+ * Such a vertex is where the curve was cut, not where it was drawn to meet: a curve meets where it comes nearest.
+ */
+function isPassedOnCurve(
+  pieces: Pieces,
+  i: number,
+  s: number,
+  j: number,
+  awayX: number,
+  awayY: number,
+): boolean {
+  const next = neighbourPiece(pieces, i, s === 0 ? -1 : 1);
+  if (next < 0 || !goesOnSmoothly(pieces, i, next)) return false;
+  const [before, after] = s === 0 ? [next, i] : [i, next];
+  const isFineCut = pieces.chord[before] === pieces.chord[after];
+  if (Math.hypot(awayX, awayY) <= ON_IT_MM) {
+    return isFineCut && Math.abs(sineBetween(pieces, i, j)) <= SAME_DIRECTION_SINE;
+  }
+  // Seen across piece j: its nearest point may be a vertex, though its curve goes on and passes nearer.
+  const side = (pieces.x2[j] - pieces.x1[j]) * awayY - (pieces.y2[j] - pieces.y1[j]) * awayX;
+  const arriving = side * sineBetween(pieces, j, before);
+  const leaving = side * sineBetween(pieces, j, after);
+  return isFineCut ? !(arriving < 0 && leaving > 0) : !(arriving <= 0 && leaving >= 0);
+}
+
+function sineBetween(pieces: Pieces, i: number, j: number): number {
+  const ux = pieces.x2[i] - pieces.x1[i];
+  const uy = pieces.y2[i] - pieces.y1[i];
+  const vx = pieces.x2[j] - pieces.x1[j];
+  const vy = pieces.y2[j] - pieces.y1[j];
+  return (ux * vy - uy * vx) / (pieces.length[i] * pieces.length[j]);
 }
 
 function addMeeting(draft: Draft, i: number, s: number, j: number, t: number): void {

@@ -267,10 +267,10 @@ function addSegments(
   if (cuts[0] < 0) addCut(Math.min(0, end), 0);
   if (end > 0 && cuts[cuts.length - 1] < length) {
     for (let i = pieceAt(pieces, c, cuts[cuts.length - 1]); i < pieces.firstPiece[c + 1]; i++) {
-      addCut(
-        Math.min(end, i === pieces.firstPiece[c + 1] - 1 ? length : pieces.start[i + 1]),
-        pieces.bendRadius[i],
-      );
+      const isLast = i === pieces.firstPiece[c + 1] - 1;
+      // A chord is one segment, however finely it was cut for its walls.
+      if (!isLast && pieces.chord[i + 1] === pieces.chord[i] && pieces.start[i + 1] < end) continue;
+      addCut(Math.min(end, isLast ? length : pieces.start[i + 1]), pieces.bendRadius[i]);
       if (cuts[cuts.length - 1] >= end) break;
     }
   }

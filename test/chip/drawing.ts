@@ -17,7 +17,8 @@ export type Draft = (ordinal: number) => LayoutItem;
 
 export function line(coordinates: readonly number[], closed = false): Centreline {
   const points = Float64Array.from(coordinates);
-  return { points, closed, bendRadius: new Float64Array(Math.max(0, points.length / 2 - 1)) };
+  const bendRadius = new Float64Array(Math.max(0, points.length / 2 - 1));
+  return { points, closed, bendRadius, curves: null };
 }
 
 /** A stroke 0.2 wide through the coordinates x0 y0 x1 y1 … */

@@ -95,6 +95,7 @@ function toChannel(spec: ChannelSpec, ordinal: number, depths: readonly string[]
       points: Float64Array.from(line),
       closed: spec.closed ?? false,
       bendRadius: Float64Array.from(spec.radii?.[k] ?? new Array(line.length / 2 - 1).fill(0)),
+      curves: null,
     })),
     disguises: [],
     dataChannel: false,

@@ -197,6 +197,7 @@ function sampleChip(names: SampleNames, { show = {}, bare = false }: SampleOptio
         points: Float64Array.from(points),
         closed: false,
         bendRadius: new Float64Array(points.length / 2 - 1),
+        curves: null,
       },
     ],
     disguises: [],

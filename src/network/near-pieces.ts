@@ -1,0 +1,91 @@
+import type { Chip } from '../chip/types.ts';
+import { cutFinely } from '../geometry/fine-cuts.ts';
+import { findNearPairs, type Nearness } from '../geometry/near.ts';
+import { type Pieces, toPieces } from '../geometry/pieces.ts';
+import { distanceToSegment } from '../geometry/segment.ts';
+
+/**
+ * All pieces of a chip and the pairs of them that come near each other. Where a strip or a well comes near a curve, the
+ * chord there is cut finely first, so that whatever is measured at the wall is exact to 0.1 µm; all other curves stay
+ * coarse. Nothing is done twice on a chip of straight strokes.
+ */
+export function findNearPieces(chip: Chip, withinMm: number): Nearness {
+  const coarse = toPieces(chip.channels);
+  const near = findNear(coarse);
+  if (coarse.curves.size === 0) return near;
+  const cut = new Uint8Array(coarse.count);
+  markPairs(near, cut);
+  markAroundEnds(chip, near, cut);
+  markAtWells(chip, near, cut);
+  return cut.includes(1) ? findNear(cutFinely(coarse, cut)) : near;
+
+  function findNear(pieces: Pieces): Nearness {
+    return findNearPairs(
+      pieces,
+      withinMm,
+      (piece) => (chip.channels[pieces.channel[piece]].linecap === 'square' ? Math.SQRT2 : 1),
+      chip.file,
+    );
+  }
+}
+
+function markPairs({ pieces, pairCount, pairA, pairB, pairDistance }: Nearness, cut: Uint8Array): void {
+  for (let k = 0; k < pairCount; k++) {
+    const i = pairA[k];
+    const j = pairB[k];
+    if (isOneRun(pieces, i, j, pairDistance[k])) continue;
+    mark(pieces, cut, i);
+    mark(pieces, cut, j);
+  }
+}
+
+function mark(pieces: Pieces, cut: Uint8Array, piece: number): void {
+  if (pieces.curves.has(piece)) cut[piece] = 1;
+}
+
+/** Two pieces of one centreline about as far apart as along it: it runs on there, and has no wall. */
+function isOneRun(pieces: Pieces, i: number, j: number, distance: number): boolean {
+  const c = pieces.centreline[i];
+  if (c !== pieces.centreline[j]) return false;
+  const between = pieces.start[j] - pieces.start[i] - pieces.length[i];
+  const round = pieces.centrelineLength[c] - between - pieces.length[i] - pieces.length[j];
+  return distance >= 0.9 * (pieces.centrelineClosed[c] === 1 ? Math.min(between, round) : between);
+}
+
+/** An end in the strip of a curve may be carried on by up to that strip's width, also beyond the chord that it is near. */
+function markAroundEnds(chip: Chip, near: Nearness, cut: Uint8Array): void {
+  const { pieces, index } = near;
+  for (let c = 0; c < pieces.centrelineCount; c++) {
+    if (pieces.centrelineClosed[c] === 1) continue;
+    const first = pieces.firstPiece[c];
+    const last = pieces.firstPiece[c + 1] - 1;
+    markAround(first, pieces.x1[first], pieces.y1[first]);
+    markAround(last, pieces.x2[last], pieces.y2[last]);
+  }
+
+  function markAround(own: number, x: number, y: number): void {
+    for (let k = near.firstPair[own]; k < near.firstPair[own + 1]; k++) {
+      const pair = near.pairOf[k];
+      const other = near.pairA[pair] === own ? near.pairB[pair] : near.pairA[pair];
+      if (!pieces.curves.has(other)) continue;
+      const strip = pieces.half[other] + chip.joinWithinMm + pieces.bulge[other];
+      if (distanceTo(pieces, other, x, y) > strip) continue;
+      const reach = 2 * strip;
+      const found = index?.search(x - reach, y - reach, x + reach, y + reach, (i) => pieces.curves.has(i));
+      for (const i of found ?? []) if (pieces.channel[i] === pieces.channel[other]) cut[i] = 1;
+    }
+  }
+}
+
+function markAtWells(chip: Chip, { pieces, index }: Nearness, cut: Uint8Array): void {
+  for (const { xMm, yMm, radiusMm } of chip.ports) {
+    const r = radiusMm + chip.joinWithinMm;
+    for (const i of index?.search(xMm - r, yMm - r, xMm + r, yMm + r) ?? []) {
+      if (distanceTo(pieces, i, xMm, yMm) <= r + pieces.half[i] + pieces.bulge[i]) mark(pieces, cut, i);
+    }
+  }
+}
+
+function distanceTo(pieces: Pieces, i: number, x: number, y: number): number {
+  return distanceToSegment(x, y, pieces.x1[i], pieces.y1[i], pieces.x2[i], pieces.y2[i]);
+}
