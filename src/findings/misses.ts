@@ -245,7 +245,7 @@ function findMiss(context: FindingContext, end: number): NearMiss | null {
 }
 
 /** Ports whose rim comes within a distance of a point: a sweep over the ports sorted by x. */
-function portsNear(context: FindingContext, x: number, y: number, withinMm: number): number[] {
+export function portsNear(context: FindingContext, x: number, y: number, withinMm: number): number[] {
   const { order, largest } = portsByX(context);
   const { ports } = context.chip;
   const reach = withinMm + largest;
