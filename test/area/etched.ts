@@ -297,7 +297,8 @@ class Etched {
   private isHeld(a: number, b: number, area: Area, findings: readonly Finding[]): boolean {
     const both = this.namesOf(a, b);
     const { half, firstPiece } = this.pieces;
-    const within = 2 * (half[firstPiece[a]] + half[firstPiece[b]]);
+    // Overlaps that follow each other along both strips are one place.
+    const within = 4 * (half[firstPiece[a]] + half[firstPiece[b]]);
     return findings.some(
       ({ rule, severity, names, xMm, yMm }) =>
         severity === 'blocker' &&
