@@ -5,6 +5,7 @@ import { distanceToSegment } from '../geometry/segment.ts';
 import { isInPieceStrip } from '../geometry/strip.ts';
 import { closestPoints, type Line, stretchWithin } from './closest.ts';
 import type { FindingContext } from './context.ts';
+import { liesInThird } from './etched-area.ts';
 import { onlyGrows } from './growth.ts';
 import { gapBetween, hasFlatEnd, lineOf } from './painted.ts';
 import { channelPaths, pointOn, type Route, routeLength } from './paths.ts';
@@ -74,15 +75,17 @@ export function findThinWalls(
     addThinStretches(stretches, context, pieces, i, j, near.pairDistance[k], limitMm);
   }
   return groupStretches(stretches, ({ apartMm }) => apartMm / 2)
-    .filter((group) => !isWedge(context, group))
+    .filter((group) => !isNoWall(context, group))
     .map((group) => toThinWall(context, pieces, group));
 }
 
-/** Whether the stretch begins where the two sides part, at either of its ends, and they only move apart from there. */
-function isWedge(context: FindingContext, group: readonly ThinStretch[]): boolean {
+/** Whether the stretch lies in a third strip, or begins where the two sides part, at either of its ends, and they only move apart from there. */
+function isNoWall(context: FindingContext, group: readonly ThinStretch[]): boolean {
   const first = group[0];
   const last = group.reduce((most, stretch) => (stretch.to > most.to ? stretch : most), first);
   return (
+    (isInThird(context, first, first.from, first.otherFrom) &&
+      isInThird(context, last, last.to, last.otherTo)) ||
     partsFrom(context, group, first, first.from, first.otherFrom, first.wayFrom) ||
     partsFrom(context, group, last, last.to, last.otherTo, last.wayTo)
   );
@@ -96,24 +99,26 @@ function partsFrom(
   t: number,
   way: number,
 ): boolean {
-  // A group that does not go down to the least way (give or take the jump from one chord of a curve to the next) begins
-  // further along: a stretch of its own.
-  if (way > 1.25 * stretch.apartMm) return false;
   const samples = group.flatMap(({ from, to, gapFrom, gapTo, gapMm, thinnestAt }) => [
     { way: Math.abs(from - s), apart: gapFrom },
     { way: Math.abs(thinnestAt - s), apart: gapMm },
     { way: Math.abs(to - s), apart: gapTo },
   ]);
-  return (
-    onlyGrows(samples, stretch.apartMm, context.chip.joinWithinMm) &&
-    partInProportion(
-      context,
-      stretch,
-      s,
-      t,
-      samples.reduce((most, sample) => Math.max(most, sample.way), 0),
-    )
-  );
+  if (!onlyGrows(samples, stretch.apartMm, context.chip.joinWithinMm)) return false;
+  if (isInThird(context, stretch, s, t)) return true;
+  // A group that does not go down to the least way (give or take the jump from one chord of a curve to the next) begins
+  // further along: a stretch of its own.
+  const farMm = samples.reduce((most, sample) => Math.max(most, sample.way), 0);
+  return way <= 1.25 * stretch.apartMm && partInProportion(context, stretch, s, t, farMm);
+}
+
+/**
+ * Whether both sides lie in one third strip there that both are joined to: two feeders that end side by side in a chamber
+ * part at its wall, however far apart their nodes are on its centreline, and in it there is no wall between them.
+ */
+function isInThird(context: FindingContext, { a, b, i, j }: ThinStretch, s: number, t: number): boolean {
+  const { network } = context;
+  return liesInThird(context, i, j, pointOn(network, a, s), pointOn(network, b, t));
 }
 
 /**

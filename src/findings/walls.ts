@@ -1,6 +1,7 @@
 import type { Channel, Chip, Sourced } from '../chip/types.ts';
 import { findNearPairs, type Nearness } from '../geometry/near.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
+import { type UnjoinedArea, unjoinedAreas } from './etched-area.ts';
 import { replacesWall } from './misses.ts';
 import { doubleStrokes } from './overlaps.ts';
 import { byPair, pairKey } from './pairs.ts';
@@ -53,9 +54,8 @@ const wallFaults = oncePerContext((context): readonly ThinWall[] => {
     }
     return limit;
   };
-  return findThinWalls(context, network.trace.near, (a, b) =>
-    limitOfDepth(deeper(chip.channels[a], chip.channels[b])),
-  ).filter(
+  const limitOf = (a: number, b: number): number => limitOfDepth(deeper(chip.channels[a], chip.channels[b]));
+  return withUnjoined(context, findThinWalls(context, network.trace.near, limitOf), limitOf).filter(
     (wall) =>
       !replacesWall(context, wall) &&
       !(doubles.get(pairKey(wall.centrelineA, wall.centrelineB)) ?? []).some(
@@ -63,6 +63,43 @@ const wallFaults = oncePerContext((context): readonly ThinWall[] => {
       ),
   );
 });
+
+/** The walls, and the overlaps that nothing joins: these say it where a wall and an overlap are one place. */
+function withUnjoined(
+  context: FindingContext,
+  walls: readonly ThinWall[],
+  limitOf: (channelA: number, channelB: number) => number,
+): readonly ThinWall[] {
+  const areas = unjoinedAreas(context);
+  if (areas.length === 0) return walls;
+  const { pieces } = context.network.trace.near;
+  const wallsOf = byPair(
+    walls,
+    ({ centrelineA }) => centrelineA,
+    ({ centrelineB }) => centrelineB,
+  );
+  const replaced = new Set<ThinWall>();
+  for (const area of areas) {
+    for (const wall of wallsOf.get(pairKey(area.centrelineA, area.centrelineB)) ?? []) {
+      if (isOnePlace(wall, area)) replaced.add(wall);
+    }
+  }
+  return [
+    ...walls.filter((wall) => !replaced.has(wall)),
+    ...areas.map((area) => ({
+      ...area,
+      limitMm: limitOf(pieces.channel[area.pieceA], pieces.channel[area.pieceB]),
+    })),
+  ];
+}
+
+function isOnePlace(wall: ThinWall, area: UnjoinedArea): boolean {
+  const turned = wall.centrelineA !== area.centrelineA;
+  const [fromA, toA, fromB, toB] = turned
+    ? [wall.fromB, wall.toB, wall.fromA, wall.toA]
+    : [wall.fromA, wall.toA, wall.fromB, wall.toB];
+  return fromA <= area.toA && toA >= area.fromA && fromB <= area.toB && toB >= area.fromB;
+}
 
 /** Walls of soft material that stand, but are thinner than half as thick as they are high. */
 function slenderWalls(context: FindingContext): readonly ThinWall[] {

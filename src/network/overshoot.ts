@@ -129,16 +129,22 @@ function findOverlapCut(
   const { ends } = draft;
   const twin = twinOf(draft, end);
   if (twin >= 0) return findTwinCut(draft, stops, end, twin);
-  const cut = findOverlap(draft, stops, byNode, end, endPosition(draft, end), ends.joinedTo[end]);
+  const { centrelineChannel } = draft.pieces;
+  const joined = ends.joinedTo[end];
+  const isJoined = (line: number): boolean => centrelineChannel[line] === centrelineChannel[joined];
+  const cut =
+    joined < 0 ? null : findOverlap(draft, stops, byNode, end, endPosition(draft, end), joined, isJoined);
   if (cut !== null || of[end] < 0) return cut;
   for (let k = first[of[end]]; k < first[of[end] + 1]; k++) {
-    const along = findOverlap(draft, stops, byNode, end, drawnPosition(draft, end), member[k] >> 1);
+    const other = member[k] >> 1;
+    const isOther = (line: number): boolean => line === other;
+    const along = findOverlap(draft, stops, byNode, end, drawnPosition(draft, end), other, isOther);
     if (along !== null) return along;
   }
   return null;
 }
 
-/** The end piece from a position back to the last join with the same channel, when it runs along that channel. */
+/** The end piece from a position back to the last join with the other's strokes, when it runs along those. */
 function findOverlap(
   draft: Draft,
   stops: Stops,
@@ -146,11 +152,11 @@ function findOverlap(
   end: number,
   from: number,
   other: number,
+  isOther: (line: number) => boolean,
 ): Cut | null {
   const { pieces } = draft;
   const c = end >> 1;
-  if (other < 0 || other === c) return null;
-  const otherChannel = pieces.centrelineChannel[other];
+  if (other === c) return null;
   const width = 2 * pieces.half[endPiece(pieces, end)];
   const otherWidth = 2 * pieces.half[pieces.firstPiece[other]];
   const limit = 2 * Math.max(width, otherWidth) + draft.slackMm;
@@ -166,17 +172,18 @@ function findOverlap(
     for (let m = byNode.first[node]; m < byNode.first[node + 1]; m++) {
       const stop = byNode.stop[m];
       const line = stops.centreline[stop];
-      if (line === c || pieces.centrelineChannel[line] !== otherChannel) continue;
+      if (line === c || !isOther(line)) continue;
       meets = true;
       const e = endAt(draft, stops, stop);
       if (e >= 0) otherEnd = e;
     }
     if (!meets) continue;
     const within = Math.min(width, otherWidth) / 2;
-    if (!runsAlong(draft, c, position, from, otherChannel, otherEnd, within)) return null;
+    if (!runsAlong(draft, c, position, from, isOther, otherEnd, within)) return null;
     if (otherEnd >= 0) {
       // Two end pieces overlap: only the narrower channel's, of equal ones the later drawn, is left out.
       const channel = pieces.centrelineChannel[c];
+      const otherChannel = pieces.centrelineChannel[other];
       const isLater = channel > otherChannel || (channel === otherChannel && c > other);
       if (isEqualSize(width, otherWidth) ? !isLater : width > otherWidth) return null;
     }
@@ -229,7 +236,7 @@ function endAt(draft: Draft, stops: Stops, stop: number): number {
 }
 
 /**
- * Whether a centreline between two positions stays within `within` of the channel's centreline and within 15° of it; what
+ * Whether a centreline between two positions stays within `within` of the others' and within 15° of them; what
  * one of its ends was carried on by counts with it.
  */
 function runsAlong(
@@ -237,7 +244,7 @@ function runsAlong(
   c: number,
   s1: number,
   s2: number,
-  channel: number,
+  isOther: (line: number) => boolean,
   carriedEnd: number,
   within: number,
 ): boolean {
@@ -257,7 +264,7 @@ function runsAlong(
       for (let k = near.firstPair[i]; k < near.firstPair[i + 1]; k++) {
         const pair = near.pairOf[k];
         const j = near.pairA[pair] === i ? near.pairB[pair] : near.pairA[pair];
-        if (pieces.channel[j] !== channel || pieces.centreline[j] === c) continue;
+        if (pieces.centreline[j] === c || !isOther(pieces.centreline[j])) continue;
         const distance = distanceToSegment(
           at.x,
           at.y,

@@ -1,0 +1,441 @@
+import {
+  commonOutline,
+  distanceToOutline,
+  leastWidth,
+  middleOfOutline,
+  type Outline,
+  pieceOutline,
+} from '../geometry/outline.ts';
+import type { Pieces } from '../geometry/pieces.ts';
+import { isInPieceStrip } from '../geometry/strip.ts';
+import { closestPoints, type Line } from './closest.ts';
+import { type FindingContext, oncePerContext } from './context.ts';
+import { portsNear } from './misses.ts';
+import { lineOf } from './painted.ts';
+import { channelPaths } from './paths.ts';
+import { coveredLength, type Facing, groupStretches } from './stretches.ts';
+
+/**
+ * One etched area is one network: where two strips of a plane overlap, or two stretches of one more than four widths
+ * apart along it, the fluid passes, and the network must say so.
+ *
+ * Two pieces that overlap are joined there when a node of both lies in what they have in common, or a well that both meet
+ * reaches it, or a third piece does that is joined to each of them there. The last is asked again and again until nothing
+ * changes, for a curve drawn as many short strokes passes the joint on from one to the next; a bend passes it on too.
+ *
+ * Cost: linear in the near pairs. Nearly all of them meet in a node at the place where they are nearest; only the rest is
+ * looked at in outline.
+ */
+export interface UnjoinedArea {
+  readonly pieceA: number;
+  readonly pieceB: number;
+  readonly centrelineA: number;
+  readonly centrelineB: number;
+  /** Extent on centreline A and on B, mm. */
+  readonly fromA: number;
+  readonly toA: number;
+  readonly fromB: number;
+  readonly toB: number;
+  /** Length of overlap along A, mm. */
+  readonly lengthMm: number;
+  /** How far the two overlap, mm; negative, as a wall that is not there. */
+  readonly gapMm: number;
+  /** Across the overlap where it is widest. */
+  readonly mark: Line;
+}
+
+/** All overlaps that nothing joins, one for each place. */
+export const unjoinedAreas: (context: FindingContext) => readonly UnjoinedArea[] = oncePerContext(
+  (context) => {
+    const unjoined = overlapsOf(context).unjoined();
+    return groupStretches(
+      unjoined.map((overlap) => toFaced(context, overlap)),
+      ({ bridgeMm }) => bridgeMm,
+    ).map(toArea);
+  },
+);
+
+/** Whether a place on piece i and one on piece j lie in one third strip that both pieces are joined to there. */
+export function liesInThird(
+  context: FindingContext,
+  i: number,
+  j: number,
+  onI: readonly [number, number],
+  onJ: readonly [number, number],
+): boolean {
+  return overlapsOf(context).liesInThird(i, j, onI, onJ);
+}
+
+const overlapsOf = oncePerContext((context) => {
+  const overlaps = new Overlaps(context);
+  overlaps.passOn(overlaps.withoutNode());
+  return overlaps;
+});
+
+/** Two pieces that overlap and hold no node of both. */
+interface Overlap {
+  readonly i: number;
+  readonly j: number;
+  readonly common: Outline;
+  joined: boolean;
+}
+
+/** A piece with more neighbours than this is drawn over so often that the rest of them tells nothing new; bounds the time. */
+const MOST_NEIGHBOURS = 64;
+
+/** An overlap narrower than this share of both halves is what rounding of the coordinates makes of two walls in one place. */
+const ROUNDING = 1e-9;
+
+class Overlaps {
+  private readonly context: FindingContext;
+  private readonly pieces: Pieces;
+  private readonly slackMm: number;
+  /** Of the near pair with this index; null where square ends keep the two apart. */
+  private readonly open = new Map<number, Overlap | null>();
+
+  constructor(context: FindingContext) {
+    this.context = context;
+    this.pieces = context.network.trace.near.pieces;
+    this.slackMm = context.chip.joinWithinMm;
+  }
+
+  /** The overlaps of near pairs that hold no node of both and reach no well of both. */
+  withoutNode(): readonly Overlap[] {
+    const { pieces } = this;
+    const { pairCount, pairA, pairB, pairDistance } = this.context.network.trace.near;
+    for (let k = 0; k < pairCount; k++) {
+      const i = pairA[k];
+      const j = pairB[k];
+      // The strip of a piece lies within half a width of it, whatever its ends.
+      if (pairDistance[k] > pieces.half[i] + pieces.half[j]) continue;
+      if (isOneStretch(pieces, i, j) || this.meetWhereNearest(i, j) || this.meetAnywhere(i, j)) continue;
+      const common = commonOutline(pieceOutline(pieces, i, 0), pieceOutline(pieces, j, 0));
+      // Strips that only touch are no overlap: thin-wall's sides without a wall say it where they run along each other.
+      if (common.length === 0 || leastWidth(common).widthMm <= ROUNDING * (pieces.half[i] + pieces.half[j])) {
+        this.open.set(k, null);
+        continue;
+      }
+      if (this.isLeftOutWhole(i, j) || this.meetInWell(i, j, common)) continue;
+      this.open.set(k, { i, j, common, joined: false });
+    }
+    return this.all();
+  }
+
+  unjoined(): readonly Overlap[] {
+    return this.all().filter(({ joined }) => !joined);
+  }
+
+  private all(): readonly Overlap[] {
+    return [...this.open.values()].filter((overlap) => overlap !== null);
+  }
+
+  /** Joins what a third piece joins, to and fro along the list, until nothing changes. */
+  passOn(open: readonly Overlap[]): void {
+    let waiting = open;
+    for (;;) {
+      const still: Overlap[] = [];
+      for (const overlap of waiting) {
+        overlap.joined = this.isJoinedByThird(overlap);
+        if (!overlap.joined) still.push(overlap);
+      }
+      if (still.length === waiting.length || still.length === 0) return;
+      waiting = still.reverse();
+    }
+  }
+
+  liesInThird(i: number, j: number, onI: readonly [number, number], onJ: readonly [number, number]): boolean {
+    const { pieces, slackMm } = this;
+    return this.thirdsOf(i, j).some(
+      (k) =>
+        pieces.centreline[k] !== pieces.centreline[i] &&
+        pieces.centreline[k] !== pieces.centreline[j] &&
+        isInPieceStrip(pieces, k, ...onI, slackMm, null) &&
+        isInPieceStrip(pieces, k, ...onJ, slackMm, null) &&
+        this.isJoined(i, k) &&
+        this.isJoined(j, k),
+    );
+  }
+
+  private isJoinedByThird({ i, j, common }: Overlap): boolean {
+    for (const k of this.thirdsOf(i, j)) {
+      if (!this.isJoined(i, k) || !this.isJoined(j, k)) continue;
+      if (this.holdsCornerOf(k, common)) return true;
+      if (commonOutline(common, pieceOutline(this.pieces, k, this.slackMm)).length > 0) return true;
+    }
+    return false;
+  }
+
+  /** Nearly always a corner of what two have in common lies in the third, and clipping can be spared. */
+  private holdsCornerOf(k: number, common: Outline): boolean {
+    for (let m = 0; m < common.length; m += 2) {
+      if (isInPieceStrip(this.pieces, k, common[m], common[m + 1], this.slackMm, null)) return true;
+    }
+    return false;
+  }
+
+  /** Pieces that may overlap both: what goes on from them, and what comes near the one of them that has fewer neighbours. */
+  private thirdsOf(i: number, j: number): number[] {
+    const { firstPair, pairOf, pairA, pairB } = this.context.network.trace.near;
+    const thirds = [...besides(this.pieces, i), ...besides(this.pieces, j)].filter((k) => k !== i && k !== j);
+    const fewer = firstPair[i + 1] - firstPair[i] <= firstPair[j + 1] - firstPair[j] ? i : j;
+    const last = Math.min(firstPair[fewer + 1], firstPair[fewer] + MOST_NEIGHBOURS);
+    for (let m = firstPair[fewer]; m < last; m++) {
+      const pair = pairOf[m];
+      const k = pairA[pair] === fewer ? pairB[pair] : pairA[pair];
+      if (k !== i && k !== j) thirds.push(k);
+    }
+    return thirds;
+  }
+
+  private isJoined(i: number, k: number): boolean {
+    if (isOneStretch(this.pieces, i, k)) return true;
+    const pair = this.pairOf(i, k);
+    if (pair < 0) return false;
+    const overlap = this.open.get(pair);
+    if (overlap !== undefined) return overlap?.joined === true;
+    const { pairDistance } = this.context.network.trace.near;
+    return pairDistance[pair] <= this.pieces.half[i] + this.pieces.half[k];
+  }
+
+  /** Index of the near pair of two pieces, −1 when they are none. */
+  private pairOf(i: number, j: number): number {
+    const { firstPair, pairOf, pairA, pairB } = this.context.network.trace.near;
+    const [own, other] = firstPair[i + 1] - firstPair[i] <= firstPair[j + 1] - firstPair[j] ? [i, j] : [j, i];
+    for (let m = firstPair[own]; m < firstPair[own + 1]; m++) {
+      const pair = pairOf[m];
+      if (pairA[pair] === other || pairB[pair] === other) return pair;
+    }
+    return -1;
+  }
+
+  /** Whether a node of both lies where the two pieces are nearest: at nearly every crossing and branch. */
+  private meetWhereNearest(i: number, j: number): boolean {
+    const { pieces } = this;
+    const { x1, y1, x2, y2 } = closestPoints(lineOf(pieces, i), lineOf(pieces, j));
+    const s = pieces.start[i] + Math.hypot(x1 - pieces.x1[i], y1 - pieces.y1[i]);
+    const t = pieces.start[j] + Math.hypot(x2 - pieces.x1[j], y2 - pieces.y1[j]);
+    return this.meetBetween(i, s, s, j) || this.meetBetween(j, t, t, i);
+  }
+
+  private meetAnywhere(i: number, j: number): boolean {
+    const { start, length } = this.pieces;
+    return (
+      this.meetBetween(i, start[i], start[i] + length[i], j) ||
+      this.meetBetween(j, start[j], start[j] + length[j], i)
+    );
+  }
+
+  /**
+   * Whether a node on piece i between two positions lies inside the strip of piece j and has a place on j's centreline
+   * near there. An end that was carried on stands where it was drawn.
+   */
+  private meetBetween(i: number, from: number, to: number, j: number): boolean {
+    const { pieces, slackMm } = this;
+    const { arcFrom, arcTo, firstArc } = this.context.network.trace;
+    const c = pieces.centreline[i];
+    const low = from <= slackMm ? Number.NEGATIVE_INFINITY : from - slackMm;
+    const high = to >= pieces.centrelineLength[c] - slackMm ? Number.POSITIVE_INFINITY : to + slackMm;
+    for (let a = this.firstArcUpTo(c, low); a < firstArc[c + 1] && arcFrom[a] <= high; a++) {
+      if (arcFrom[a] >= low && this.meetAtSide(2 * a, arcFrom[a], i, j)) return true;
+      if (arcTo[a] <= high && this.meetAtSide(2 * a + 1, arcTo[a], i, j)) return true;
+    }
+    return false;
+  }
+
+  /** The first arc of a centreline that reaches a position. */
+  private firstArcUpTo(c: number, s: number): number {
+    const { firstArc, arcTo } = this.context.network.trace;
+    let low = firstArc[c];
+    let high = firstArc[c + 1];
+    while (low < high) {
+      const middle = (low + high) >> 1;
+      if (arcTo[middle] < s) low = middle + 1;
+      else high = middle;
+    }
+    return low;
+  }
+
+  private meetAtSide(side: number, s: number, i: number, j: number): boolean {
+    const { pieces, slackMm } = this;
+    const { arcFrom, arcTo, firstArc } = this.context.network.trace;
+    const along = Math.min(pieces.centrelineLength[pieces.centreline[i]], Math.max(0, s)) - pieces.start[i];
+    if (along < -slackMm || along > pieces.length[i] + slackMm) return false;
+    const share = along / pieces.length[i];
+    const x = pieces.x1[i] + share * (pieces.x2[i] - pieces.x1[i]);
+    const y = pieces.y1[i] + share * (pieces.y2[i] - pieces.y1[i]);
+    if (!isInPieceStrip(pieces, j, x, y, slackMm, null)) return false;
+    const c = pieces.centreline[j];
+    const t = pieces.start[j] + alongPiece(pieces, j, x, y);
+    const nearMm = 4 * (pieces.half[i] + pieces.half[j]);
+    const node = this.nodeAt(side);
+    for (let a = this.firstArcUpTo(c, t - nearMm); a < firstArc[c + 1] && arcFrom[a] <= t + nearMm; a++) {
+      if (arcFrom[a] >= t - nearMm && 2 * a !== side && this.nodeAt(2 * a) === node) return true;
+      if (arcTo[a] <= t + nearMm && 2 * a + 1 !== side && this.nodeAt(2 * a + 1) === node) return true;
+    }
+    return false;
+  }
+
+  /** Node at an arc's start (even side) or end. Rule 7 takes away nodes where two arcs of one reach meet: a number of their own. */
+  private nodeAt(side: number): number {
+    const { arcNodeFrom, arcNodeTo } = this.context.network.trace;
+    const node = (side & 1) === 0 ? arcNodeFrom[side >> 1] : arcNodeTo[side >> 1];
+    return node >= 0 ? node : channelPaths(this.context).sideVertex[side];
+  }
+
+  /** A stroke that the joining rules left out whole has no node: it is joined where it was to be carried on. */
+  private isLeftOutWhole(i: number, j: number): boolean {
+    return this.isLeftOutOf(i, j) || this.isLeftOutOf(j, i);
+  }
+
+  private isLeftOutOf(i: number, j: number): boolean {
+    const { pieces, slackMm } = this;
+    const { firstArc, endJoinedTo } = this.context.network.trace;
+    const c = pieces.centreline[i];
+    if (firstArc[c + 1] > firstArc[c]) return false;
+    return [2 * c, 2 * c + 1].some((end) => {
+      if (endJoinedTo[end] !== pieces.centreline[j]) return false;
+      const piece = end === 2 * c ? pieces.firstPiece[c] : pieces.firstPiece[c + 1] - 1;
+      if (piece !== i) return false;
+      const [x, y] = end === 2 * c ? [pieces.x1[i], pieces.y1[i]] : [pieces.x2[i], pieces.y2[i]];
+      return isInPieceStrip(pieces, j, x, y, slackMm, null);
+    });
+  }
+
+  private meetInWell(i: number, j: number, common: Outline): boolean {
+    const { chip, network } = this.context;
+    const { x, y } = middleOfOutline(common);
+    let reach = 0;
+    for (let k = 0; k < common.length; k += 2)
+      reach = Math.max(reach, Math.hypot(common[k] - x, common[k + 1] - y));
+    return portsNear(this.context, x, y, reach + this.slackMm).some((p) => {
+      const { xMm, yMm, radiusMm } = chip.ports[p];
+      if (distanceToOutline(common, xMm, yMm) > radiusMm + this.slackMm) return false;
+      const node = network.portNode[p];
+      return this.hasPlace(node, i) && this.hasPlace(node, j);
+    });
+  }
+
+  private hasPlace(node: number, piece: number): boolean {
+    const { firstPlace, placeCentreline } = this.context.network.trace;
+    for (let k = firstPlace[node]; k < firstPlace[node + 1]; k++) {
+      if (placeCentreline[k] === this.pieces.centreline[piece]) return true;
+    }
+    return false;
+  }
+}
+
+/**
+ * Pieces of one centreline that go on in each other, or overlap only within four widths along it: one duct, turning or not.
+ */
+function isOneStretch(pieces: Pieces, i: number, j: number): boolean {
+  const c = pieces.centreline[i];
+  if (c !== pieces.centreline[j]) return false;
+  const [low, high] = i < j ? [i, j] : [j, i];
+  if (high - low <= 1) return true;
+  const fourWidths = 8 * pieces.half[i];
+  const onLow = reachOnto(pieces, low, high);
+  const onHigh = reachOnto(pieces, high, low);
+  if (onHigh[1] - onLow[0] <= fourWidths) return true;
+  if (pieces.centrelineClosed[c] === 0) return false;
+  if (low === pieces.firstPiece[c] && high === pieces.firstPiece[c + 1] - 1) return true;
+  return pieces.centrelineLength[c] - onHigh[0] + onLow[1] <= fourWidths;
+}
+
+/** Positions on piece i between which the strip of piece j, of the same width, can reach it. */
+function reachOnto(pieces: Pieces, i: number, j: number): readonly [number, number] {
+  const { half, start } = pieces;
+  const one = alongPiece(pieces, i, pieces.x1[j], pieces.y1[j]);
+  const two = alongPiece(pieces, i, pieces.x2[j], pieces.y2[j]);
+  return [
+    start[i] + Math.max(0, Math.min(one, two) - half[j]),
+    start[i] + Math.min(pieces.length[i], Math.max(one, two) + half[j]),
+  ];
+}
+
+/** The pieces before and after one on its centreline. */
+function besides(pieces: Pieces, i: number): number[] {
+  const c = pieces.centreline[i];
+  const first = pieces.firstPiece[c];
+  const last = pieces.firstPiece[c + 1] - 1;
+  const closed = pieces.centrelineClosed[c] === 1;
+  const found: number[] = [];
+  if (i > first) found.push(i - 1);
+  else if (closed && last > first) found.push(last);
+  if (i < last) found.push(i + 1);
+  else if (closed && last > first) found.push(first);
+  return found;
+}
+
+/** Distance along a piece, within it, of the place nearest to a point. */
+function alongPiece(pieces: Pieces, i: number, x: number, y: number): number {
+  const dx = (pieces.x2[i] - pieces.x1[i]) / pieces.length[i];
+  const dy = (pieces.y2[i] - pieces.y1[i]) / pieces.length[i];
+  return Math.min(pieces.length[i], Math.max(0, (x - pieces.x1[i]) * dx + (y - pieces.y1[i]) * dy));
+}
+
+/** An overlap as stretches of its two centrelines that face each other. */
+interface Faced extends Facing {
+  readonly overlap: Overlap;
+  readonly widthMm: number;
+  readonly mark: Line;
+  readonly bridgeMm: number;
+}
+
+function toFaced({ network }: FindingContext, overlap: Overlap): Faced {
+  const { pieces } = network.trace.near;
+  const { i, j, common } = overlap;
+  const { widthMm, nx, ny } = leastWidth(common);
+  const { x, y } = middleOfOutline(common);
+  const [from, to] = extentOn(pieces, i, common);
+  const [otherFrom, otherTo] = extentOn(pieces, j, common);
+  const h = widthMm / 2;
+  return {
+    a: pieces.centreline[i],
+    b: pieces.centreline[j],
+    from,
+    to,
+    otherFrom,
+    otherTo,
+    overlap,
+    widthMm,
+    mark: [x - h * nx, y - h * ny, x + h * nx, y + h * ny],
+    bridgeMm: pieces.half[i] + pieces.half[j],
+  };
+}
+
+function extentOn(pieces: Pieces, i: number, outline: Outline): readonly [number, number] {
+  let low = Number.POSITIVE_INFINITY;
+  let high = Number.NEGATIVE_INFINITY;
+  for (let k = 0; k < outline.length; k += 2) {
+    const s = pieces.start[i] + alongPiece(pieces, i, outline[k], outline[k + 1]);
+    low = Math.min(low, s);
+    high = Math.max(high, s);
+  }
+  return [low, high];
+}
+
+function toArea(group: readonly Faced[]): UnjoinedArea {
+  let widest = group[0];
+  let toA = Number.NEGATIVE_INFINITY;
+  let fromB = Number.POSITIVE_INFINITY;
+  let toB = Number.NEGATIVE_INFINITY;
+  for (const faced of group) {
+    if (faced.widthMm > widest.widthMm) widest = faced;
+    toA = Math.max(toA, faced.to);
+    fromB = Math.min(fromB, faced.otherFrom, faced.otherTo);
+    toB = Math.max(toB, faced.otherFrom, faced.otherTo);
+  }
+  return {
+    pieceA: widest.overlap.i,
+    pieceB: widest.overlap.j,
+    centrelineA: widest.a,
+    centrelineB: widest.b,
+    fromA: group[0].from,
+    toA,
+    fromB,
+    toB,
+    lengthMm: coveredLength(group.map(({ from, to }) => [from, to])),
+    gapMm: -widest.widthMm,
+    mark: widest.mark,
+  };
+}
