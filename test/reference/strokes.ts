@@ -193,7 +193,7 @@ function forkOf(
   const arms = armsOf(plan, n);
   const through = arms.filter((one) => partner.has(key(one)));
   const arm = arms.find((one) => one.edge === end.edge && one.side === end.side)!;
-  const isAtNode = dot({ x: start.x - plan.nodes[n].at.x, y: start.y - plan.nodes[n].at.y }, arm.u) < 1e-6;
+  const isAtNode = distance(start, plan.nodes[n].at) < 1e-3;
   if (plan.nodes[n].port !== null || through.length !== 2 || arms.length !== 3 || !isAtNode) return 0;
   return runIn(arm, through, plan.edges[through[0].edge].widthMm, false);
 }
@@ -328,7 +328,7 @@ function split(stroke: PlanStroke, random: Random, looseness: Looseness): PlanSt
   );
   const u = { x: (points[k + 1].x - points[k].x) / length, y: (points[k + 1].y - points[k].y) / length };
   const off = random.chance(0.4) ? looseness.endOffset * random.between(-0.7, 0.7) : 0;
-  const overlap = random.chance(0.3) ? random.between(0.2, 1.6) * stroke.widthMm : 0;
+  const overlap = random.chance(0.3) ? Math.max(0.04, Math.min(1.2, random.between(0.2, 1.6) * stroke.widthMm)) : 0;
   const end = plus(plus(spot, u, overlap / 2), { x: -u.y, y: u.x }, off);
   const start = plus(spot, u, -overlap / 2);
   return [
