@@ -441,7 +441,8 @@ function leaveOutOverlaps(
     const cutAt = atStart ? next.place.from : next.place.to;
     const piece = stretch(one.line.points, Math.min(one.length, Math.max(0, cutAt)), s);
     for (const other of new Set(nodes[next.node].places.map(({ line }) => line))) {
-      if (other === l || !runsAlong(piece, one.line, kept[other].line)) continue;
+      const along = other === l ? ownStretch(bundle[0], one.line)?.line : kept[other].line;
+      if (along === undefined || !runsAlong(piece, one.line, along)) continue;
       overlaps.push({ line: l, atStart, along: other, nodes: [next.node, end?.node ?? -1], cutAt });
     }
   }
@@ -513,14 +514,6 @@ function graphOf(
   bundles: readonly (readonly End[])[],
   slack: number,
 ): Graph {
-  if (process.env.DBG)
-    console.log(
-      JSON.stringify(
-        { kept: kept.map((k) => [k.before, k.after, k.least, k.most, k.length]), nodes, bundles },
-        null,
-        0,
-      ),
-    );
   const threads = sewn(kept, nodes, bundles, slack);
   const graphNodes: GraphNode[] = nodes.map(({ hole }, n) => ({
     at: hole === null ? placeOf(n, threads) : holes[hole].at,

@@ -29,7 +29,8 @@ export interface PlanPort {
 }
 
 /** Middle of the port's circle. */
-export const holeOf = ({ at, port }: PlanNode): Point => (port?.aside === undefined ? at : plus(at, port.aside));
+export const holeOf = ({ at, port }: PlanNode): Point =>
+  port?.aside === undefined ? at : plus(at, port.aside);
 
 export interface PlanLayer {
   readonly name: string;
@@ -63,7 +64,8 @@ export function randomPlan(random: Random): Plan {
     const kind = random.share();
     const plan =
       kind < 0.55 ? net(random) : kind < 0.7 ? star(random) : kind < 0.8 ? fork(random) : chamber(random);
-    if (isApart(plan, kind < 0.7 ? 25 : 12)) return random.chance(0.3) ? withThinNeighbour(plan, random) : plan;
+    if (isApart(plan, kind < 0.7 ? 25 : 12))
+      return random.chance(0.3) ? withThinNeighbour(plan, random) : plan;
   }
 }
 
@@ -127,7 +129,11 @@ function net(random: Random): Plan {
     }
   }
   const nodes = withPorts(random, at, isPort);
-  return { nodes: nodes.map((node, n) => (n < degree.length ? node : aside(node, n, edges, random))), edges, layers };
+  return {
+    nodes: nodes.map((node, n) => (n < degree.length ? node : aside(node, n, edges, random))),
+    edges,
+    layers,
+  };
 }
 
 /** A port in the middle of a straight edge: its circle will lie beside the centreline. */
@@ -209,7 +215,11 @@ function fork(random: Random): Plan {
     return { a: 0, b: n, layer, widthMm, path: [{ kind: 'line', to: at[n] }], isCarried: false };
   };
   const layer = random.whole(0, 1);
-  const edges = [straight(1, 0, main), straight(2, 0, main), straight(3, layer, random.oneOf([main, branch]))];
+  const edges = [
+    straight(1, 0, main),
+    straight(2, 0, main),
+    straight(3, layer, random.oneOf([main, branch])),
+  ];
   return { nodes: withPorts(random, at, [false, true, true, true]), edges, layers };
 }
 

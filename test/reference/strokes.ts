@@ -328,7 +328,9 @@ function split(stroke: PlanStroke, random: Random, looseness: Looseness): PlanSt
   );
   const u = { x: (points[k + 1].x - points[k].x) / length, y: (points[k + 1].y - points[k].y) / length };
   const off = random.chance(0.4) ? looseness.endOffset * random.between(-0.7, 0.7) : 0;
-  const overlap = random.chance(0.3) ? Math.max(0.04, Math.min(1.2, random.between(0.2, 1.6) * stroke.widthMm)) : 0;
+  const overlap = random.chance(0.3)
+    ? Math.max(0.04, Math.min(1.2, random.between(0.2, 1.6) * stroke.widthMm))
+    : 0;
   const end = plus(plus(spot, u, overlap / 2), { x: -u.y, y: u.x }, off);
   const start = plus(spot, u, -overlap / 2);
   return [
