@@ -1,4 +1,4 @@
-/** RILLCHECK_FUZZ_CHIPS sets how many chips, RILLCHECK_FUZZ_SEED where they start. */
+/** RILLCHECK_FUZZ_CHIPS sets how many chips, RILLCHECK_FUZZ_SEED where they start: the seed of one chip replays it. */
 import { expect, it } from 'vitest';
 import { type Comparison, compareSeed, failureText } from '../reference/compare.ts';
 
