@@ -5,13 +5,14 @@ import { DEFAULT_JOIN_WITHIN_MM, DEFAULT_JOINTS } from './defaults.ts';
 import { type DrawnEdge, findEdge } from './edge.ts';
 import { findFilledOutlines } from './filled.ts';
 import { resolveFluid } from './fluid.ts';
-import { drawnLayers, refuseUnknownNames } from './known-names.ts';
+import { drawnLayers, drawnShapes, refuseUnknownNames } from './known-names.ts';
 import { layerFinder, withDrawnDepths } from './layers.ts';
 import { resolveLimits } from './limits.ts';
 import { readPorts } from './ports.ts';
 import { resolveScale } from './scale.ts';
 import { selectItems } from './select.ts';
 import { settingsFinder } from './settings.ts';
+import { withTargetsNamed } from './targets.ts';
 import type { Chip, ChipEdge, ReadingFault } from './types.ts';
 
 export interface ChipInput {
@@ -29,7 +30,8 @@ export interface ChipInput {
  * Cost: n log n in the number of drawn shapes.
  * @throws InputError for a name that the drawing lacks, a contradiction between the two, or a value nobody can compute with
  */
-export function assembleChip({ layout, sheet, file, layoutSha256 }: ChipInput): Chip {
+export function assembleChip({ layout, sheet: written, file, layoutSha256 }: ChipInput): Chip {
+  let sheet = written;
   const joints = sheet?.joints ?? DEFAULT_JOINTS;
   const fluid = resolveFluid(sheet);
   const limits = resolveLimits(sheet);
@@ -40,18 +42,30 @@ export function assembleChip({ layout, sheet, file, layoutSha256 }: ChipInput): 
 
   const finder = layerFinder(sheet);
   const { strokes, holes, outlines, ignored, setAside } = selectItems(layout, sheet, edge, finder);
-  const settings = settingsFinder(sheet);
+  const settings = settingsFinder(sheet, 'channels', sheet?.channels ?? {});
+  const conditions = settingsFinder(sheet, 'ports', sheet?.ports ?? {});
   const channels = readChannels(strokes, unitMm, finder, settings, file);
-  const ports = readPorts(holes, unitMm, sheet, limits.portDiameterM.value, file, ignored, setAside);
+  const ports = readPorts(
+    holes,
+    unitMm,
+    sheet,
+    limits.portDiameterM.value,
+    file,
+    ignored,
+    setAside,
+    conditions,
+  );
   if (sheet !== null) {
+    sheet = withTargetsNamed(sheet, channels.drawnNames, ports.drawnNames);
     const names = {
       channels: channels.drawnNames,
       ports: ports.drawnNames,
       layers: drawnLayers(layout),
+      shapes: drawnShapes(layout),
       isMade: (name: string) => channels.isMade(name) || ports.isMade(name),
       setAside,
     };
-    refuseUnknownNames(sheet, names, settings.unmatched());
+    refuseUnknownNames(sheet, names, { channels: settings, ports: conditions });
   }
   const filled = findFilledOutlines(
     outlines,
@@ -84,7 +98,8 @@ export function assembleChip({ layout, sheet, file, layoutSha256 }: ChipInput): 
     faults: [...assumed, ...channels.faults, ...filled],
     fluid,
     joinWithinMm,
-    joints,
+    // Joints one by one are not computed yet: the finding not-computed says what is counted instead.
+    joints: joints === 'computed' ? DEFAULT_JOINTS : joints,
     process: sheet?.process ?? null,
     limits,
     accept: sheet?.accept ?? [],

@@ -2,6 +2,7 @@ import { InputError } from '../errors.ts';
 import type { Centreline, Stroke } from '../layout/types.ts';
 import { isotropicSection } from '../physics/section.ts';
 import { quote } from '../runsheet/quote.ts';
+import type { ChannelEntry } from '../runsheet/types.ts';
 import { depthOf, type LayerFinder } from './layers.ts';
 import type { SettingsFinder } from './settings.ts';
 import type { Channel, ReadingFault } from './types.ts';
@@ -25,7 +26,7 @@ export function readChannels(
   strokes: readonly Stroke[],
   unitMm: number,
   finder: LayerFinder,
-  settings: SettingsFinder,
+  settings: SettingsFinder<ChannelEntry>,
   file: string,
 ): ChannelReading {
   const drawnNames = new Set<string>();

@@ -1,10 +1,11 @@
 import type { Layout } from '../layout/types.ts';
-import { isPattern, layerKey } from '../runsheet/names.ts';
+import { isPattern, layerKey, matches } from '../runsheet/names.ts';
 import { nearest } from '../runsheet/nearest.ts';
 import { type KeyPath, pathText } from '../runsheet/path-text.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { RunSheet } from '../runsheet/types.ts';
 import { refuse } from './complain.ts';
+import type { SettingsFinder } from './settings.ts';
 
 /** What the drawing offers to name. */
 export interface KnownNames {
@@ -12,6 +13,8 @@ export interface KnownNames {
   readonly ports: ReadonlySet<string>;
   /** By layer key, as drawn. */
   readonly layers: ReadonlyMap<string, string>;
+  /** Of every stroke, circle and closed shape, also of those not read. */
+  readonly shapes: ReadonlySet<string>;
   /** Whether a name was made up here and means nothing in a run sheet. */
   readonly isMade: (name: string) => boolean;
   /** Names drawn but not read, with why. */
@@ -33,15 +36,25 @@ export function drawnLayers(layout: Layout): ReadonlyMap<string, string> {
   return layers;
 }
 
+/** Names of everything that could be a channel, a port or a chamber. */
+export function drawnShapes(layout: Layout): ReadonlySet<string> {
+  const names = new Set<string>();
+  for (const { kind, name } of layout.items) if (kind !== 'ignored' && name !== null) names.add(name);
+  return names;
+}
+
 /**
  * Refuses the first name of the run sheet that the drawing lacks, with its line and the nearest right name.
  * Nodes and reaches are named by the network and answered there; `ignore` may name what is not drawn.
- * @param unmatchedChannels keys of `channels` that matched no channel
+ * @param keys what of `channels` and `ports` matched nothing, or only what other entries go before for
  */
 export function refuseUnknownNames(
   sheet: RunSheet,
   names: KnownNames,
-  unmatchedChannels: readonly string[],
+  keys: {
+    readonly channels: Pick<SettingsFinder<unknown>, 'unmatched'>;
+    readonly ports: Pick<SettingsFinder<unknown>, 'unmatched' | 'overruled'>;
+  },
 ): void {
   const layerNames = [...names.layers.values()];
   const layer = (path: KeyPath, name: string): void => {
@@ -52,16 +65,34 @@ export function refuseUnknownNames(
   };
   if (sheet.portsLayer !== null) layer(['ports_layer'], sheet.portsLayer);
   for (const name of Object.keys(sheet.layers)) layer(['layers', name], name);
-  for (const name of Object.keys(sheet.ports)) port(['ports', name], name);
-  for (const name of unmatchedChannels)
-    unknown(sheet, ['channels', name], 'channel', name, names.channels, names);
-  for (const [i, target] of sheet.targets.entries()) {
-    if (target.on === 'port') port(['targets', i, 'port'], target.name);
-    if (target.on === 'channel' && !names.channels.has(target.name)) {
-      unknown(sheet, ['targets', i, 'channel'], 'channel', target.name, names.channels, names);
-    }
-    port(['targets', i, 'by'], target.by);
+  for (const name of keys.ports.unmatched())
+    unknown(sheet, ['ports', name], 'port', name, names.ports, names);
+  for (const name of keys.ports.overruled()) {
+    const path = ['ports', name];
+    refuse(
+      sheet,
+      path,
+      `${pathText(path)}: every port that it matches has an entry that goes before it, so it says nothing; take it out, or name the ports in full`,
+    );
   }
+  const fields = new Set(sheet.fields.map((name) => name.trim()));
+  for (const name of keys.channels.unmatched()) {
+    if (!fields.has(name.trim())) unknown(sheet, ['channels', name], 'channel', name, names.channels, names);
+  }
+  for (const { index, on, name, by } of [...sheet.targets, ...sheet.concentrationTargets]) {
+    if (on === 'port') port(['targets', index, 'port'], name);
+    if (on === 'channel' && !names.channels.has(name))
+      unknown(sheet, ['targets', index, 'channel'], 'channel', name, names.channels, names);
+    port(['targets', index, 'by'], by);
+  }
+  for (const [i, name] of sheet.fields.entries()) {
+    if (!names.shapes.has(name.trim())) unknown(sheet, ['fields', i], 'shape', name, names.shapes, names);
+  }
+  for (const [i, name] of sheet.pillars.entries()) layer(['pillars', i], name);
+  for (const [i, name] of (sheet.switch?.from ?? []).entries()) port(['switch', 'from', i], name);
+  const asked = sheet.switch?.reach ?? null;
+  if (asked !== null && !isReachOf(names.channels, asked))
+    unknown(sheet, ['switch', 'reach'], 'channel', asked, names.channels, names);
   for (const name of Object.keys(sheet.pumpLimits)) port(['pump_limits', name], name);
   for (const name of Object.keys(sheet.tolerances?.depthByLayer ?? {}))
     layer(['tolerances', 'depth', name], name);
@@ -74,10 +105,17 @@ export function refuseUnknownNames(
   }
 }
 
+/** A reach is named for its channel, with a number where the channel has several. */
+function isReachOf(channels: ReadonlySet<string>, asked: string): boolean {
+  const channel = asked.replace(/:[\d*]*$/, '');
+  if (channels.has(asked) || channels.has(channel)) return true;
+  return isPattern(asked) && [...channels].some((name) => matches(asked, name) || matches(channel, name));
+}
+
 function unknown(
   sheet: RunSheet,
   path: KeyPath,
-  what: 'channel' | 'port' | 'layer',
+  what: 'channel' | 'port' | 'layer' | 'shape',
   name: string,
   candidates: Iterable<string>,
   { isMade, setAside }: KnownNames,
@@ -85,14 +123,14 @@ function unknown(
   const key = pathText(path);
   if (isMade(name)) refuse(sheet, path, `${key}: ${madeUp(name)}`);
   const why = setAside.get(name);
-  if (what !== 'layer' && why !== undefined) {
+  if ((what === 'channel' || what === 'port') && why !== undefined) {
     refuse(sheet, path, `${key}: ${quote(name)} is drawn but is no ${what} here: ${why}`);
   }
   const all = [...candidates];
   const near = nearest(name.replaceAll('*', ''), all);
   const fact =
-    isPattern(name) && what === 'channel'
-      ? `no channel matches ${quote(name)}`
+    isPattern(name) && (what === 'channel' || what === 'port')
+      ? `no ${what} matches ${quote(name)}`
       : `the drawing has no ${what} ${quote(name)}`;
   refuse(
     sheet,

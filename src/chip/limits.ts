@@ -2,6 +2,9 @@ import type { Limits, ProcessName, RunSheet } from '../runsheet/types.ts';
 import { DEFAULT_MAX_REYNOLDS, DEFAULT_PORT_DIAMETER_M } from './defaults.ts';
 import type { ChipLimits, Sourced } from './types.ts';
 
+/** Rounding never decides against the drawing: every limit, window and ceiling is passed only by more than this share of it. */
+export const LIMIT_SLACK = 1e-6;
+
 /**
  * Every limit with where it came from: the run sheet, else what is usual for the process, else none.
  * Only the port diameter and the Reynolds number have a default without a process.

@@ -3,8 +3,10 @@ import { InputError } from '../errors.ts';
 import type { Hole } from '../layout/types.ts';
 import { layerKey } from '../runsheet/names.ts';
 import { quote } from '../runsheet/quote.ts';
-import type { RunSheet } from '../runsheet/types.ts';
+import type { PortEntry, RunSheet } from '../runsheet/types.ts';
+import { LIMIT_SLACK } from './limits.ts';
 import type { Tally } from './select.ts';
+import type { SettingsFinder } from './settings.ts';
 import type { Port } from './types.ts';
 import { UniqueNames } from './unique-names.ts';
 
@@ -20,7 +22,7 @@ export interface PortReading {
 /**
  * Circles as ports: of the right size and layer, concentric ones together with the largest as the well.
  * @param diameterM smallest and largest, both included with a relative slack of 1e-6
- * @throws InputError when two ports have one name
+ * @throws InputError when two ports have one name, or a tie between patterns of the run sheet
  */
 export function readPorts(
   holes: readonly Hole[],
@@ -30,6 +32,7 @@ export function readPorts(
   file: string,
   ignored: Tally,
   setAside: Map<string, string>,
+  settings: SettingsFinder<PortEntry>,
 ): PortReading {
   const layer = sheet?.portsLayer == null ? null : layerKey(sheet.portsLayer);
   const suitable: Hole[] = [];
@@ -43,8 +46,8 @@ export function readPorts(
       ignored.add('circle outside the ports layer');
       note(hole, 'it is not in the ports layer');
     } else if (
-      diameterMm < diameterM[0] * 1000 * (1 - SLACK) ||
-      diameterMm > diameterM[1] * 1000 * (1 + SLACK)
+      diameterMm < diameterM[0] * 1000 * (1 - LIMIT_SLACK) ||
+      diameterMm > diameterM[1] * 1000 * (1 + LIMIT_SLACK)
     ) {
       unsuitable.push(hole);
       const [least, most] = diameterM.map((limit) => number(limit * 1000));
@@ -57,14 +60,14 @@ export function readPorts(
     }
   }
   const wells = concentric(suitable, unitMm);
-  const drawn = wells.map((circles) => ({ well: circles[0]!, name: nameOf(circles, sheet) }));
+  const drawn = wells.map((circles) => ({ well: circles[0]!, name: nameOf(circles, settings) }));
   drawn.sort((a, b) => a.well.ordinal - b.well.ordinal);
   refuseTwins(drawn, unitMm, file);
   const drawnNames = new Set<string>();
   for (const { name } of drawn) if (name !== null) drawnNames.add(name);
   const names = new UniqueNames(drawnNames);
   const ports = drawn.map(({ well, name }, i): Port => {
-    const entry = name === null ? undefined : sheet?.ports[name];
+    const entry = name === null ? null : settings.of(name);
     return {
       name: name === null ? names.ofUnnamed(`port-${i + 1}`) : names.ofDrawn(name),
       drawnName: name,
@@ -79,8 +82,6 @@ export function readPorts(
   });
   return { ports, unsuitable, drawnNames, isMade: (name) => names.isMade(name) };
 }
-
-const SLACK = 1e-6;
 
 /** Centres within 1 µm, or within 1 % of the larger radius, are one centre. Each group has its largest circle first. */
 function concentric(holes: readonly Hole[], unitMm: number): readonly (readonly Hole[])[] {
@@ -107,15 +108,10 @@ function concentric(holes: readonly Hole[], unitMm: number): readonly (readonly 
   return groups;
 }
 
-/** Of the names of concentric circles the one that the run sheet uses, else the largest circle's. */
-function nameOf(circles: readonly Hole[], sheet: RunSheet | null): string | null {
-  let first: string | null = null;
-  for (const { name } of circles) {
-    if (name === null) continue;
-    if (sheet?.ports[name] !== undefined) return name;
-    first ??= name;
-  }
-  return first;
+/** Of the names of concentric circles the one that the run sheet names, else one that a pattern of it matches, else the largest circle's. */
+function nameOf(circles: readonly Hole[], settings: SettingsFinder<PortEntry>): string | null {
+  const names = circles.flatMap(({ name }) => name ?? []);
+  return names.find(settings.isNamed) ?? names.find(settings.isMatched) ?? names[0] ?? null;
 }
 
 function refuseTwins(

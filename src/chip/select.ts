@@ -49,6 +49,7 @@ export function selectItems(
   const setAside = new Map<string, string>();
   for (const [kind, count] of Object.entries(layout.unread)) ignored.add(kind, count);
   const isIgnored = ignoreTest(sheet?.ignore ?? []);
+  const isChamberPart = chamberTest(sheet);
   const inside = edge !== null && sheet?.outline != null ? indexRings([edge.rings]) : null;
 
   const leaveOut = (item: LayoutItem, kind: string, why: string): void => {
@@ -61,6 +62,8 @@ export function selectItems(
       leaveOut(item, 'named under ignore', 'the run sheet ignores it');
     } else if (finder.entryOf(item.groups)?.kind === 'ignore') {
       leaveOut(item, 'in an ignored layer', 'its layer is set to ignore');
+    } else if (isChamberPart(item)) {
+      leaveOut(item, 'chamber or pillar', 'it is named under fields or pillars');
     } else if (item.kind === 'ignored') {
       leaveOut(item, item.reason, `it is a ${item.reason}`);
     } else {
@@ -88,6 +91,18 @@ function ignoreTest(ignore: readonly string[]): (item: LayoutItem) => boolean {
     return answer;
   };
   return (item) => (item.name !== null && element(item.name)) || groupsIgnored(item.groups);
+}
+
+/** Filled shapes that the run sheet calls a chamber or pillars are never ports or outlines, even when round. */
+function chamberTest(sheet: RunSheet | null): (item: LayoutItem) => boolean {
+  const fields = new Set((sheet?.fields ?? []).map((name) => name.trim()));
+  const pillars = new Set((sheet?.pillars ?? []).map(layerKey));
+  if (fields.size === 0 && pillars.size === 0) return () => false;
+  return (item) => {
+    if (item.kind !== 'hole' && item.kind !== 'outline') return false;
+    if (item.name !== null && fields.has(item.name)) return true;
+    return item.groups.some((group) => pillars.has(layerKey(group)));
+  };
 }
 
 function nameTest(entries: readonly string[]): (name: string) => boolean {

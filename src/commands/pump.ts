@@ -91,10 +91,10 @@ const EXAMPLE = '- { channel: lane-1, wall_shear: 0.3 Pa, by: feed }';
 
 function refuseNoTargets(cases: readonly SheetCase[], file: string): void {
   if (cases.some(({ sheet }) => sheet !== null && sheet.targets.length > 0)) return;
-  throw new InputError(
-    file,
-    `targets: there are none to find settings for; write under targets for example "${EXAMPLE}"`,
-  );
+  const none = cases.some(({ sheet }) => sheet !== null && sheet.concentrationTargets.length > 0)
+    ? 'there are only concentrations, which are not computed yet'
+    : 'there are none to find settings for';
+  throw new InputError(file, `targets: ${none}; write under targets for example "${EXAMPLE}"`);
 }
 
 function noRunSheet(layoutPath: string): InputError {

@@ -157,8 +157,8 @@ function portLines(chip: Chip): string[] {
     return `  ${keyText(drawnName)}: {} # fill in; ${place}`;
   });
   return [
-    'ports: # { pressure: 12 kPa }, { flow: 2 uL/min } (into the chip is positive), { head: 40 mm }, open or sealed;',
-    '  # with tubing: { pressure: 12 kPa, tubing: { bore: 0.5 mm, length: 300 mm }, expect: in }',
+    'ports: # { pressure: 12 kPa }, { flow: 2 uL/min } (into the chip is positive), { head: 40 mm }, open or sealed; * matches any run of characters',
+    '  # with tubing: { pressure: 12 kPa, tubing: { bore: 0.5 mm, length: 300 mm }, expect: in }; several pieces: tubing: [{ … }, { …, temperature: 22 degC }]',
     ...lines,
     '',
   ];
@@ -166,6 +166,7 @@ function portLines(chip: Chip): string[] {
 
 const WINDOW_EXAMPLE = [
   '#  "lane-*": { wall_shear: { min: 0.05 Pa, max: 0.5 Pa }, residence_time: { max: 60 s }, flow: { min: 1 uL/min } }',
+  '#  "branch-*": { even: 5 % } # the flows of all channels of this name within ±5 % of their mean',
 ];
 
 function channelLines(chip: Chip, layout: Layout): string[] {

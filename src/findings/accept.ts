@@ -1,3 +1,4 @@
+import { acceptedName } from '../chip/accept.ts';
 import { UNACCEPTABLE_RULES } from '../runsheet/measures.ts';
 import { measureText, type Show } from '../runsheet/shown.ts';
 import type { AcceptEntry } from '../runsheet/types.ts';
@@ -7,11 +8,12 @@ import { listText } from './words.ts';
 
 /**
  * Marks the findings that the run sheet's `accept` entries take on, and adds `unmatched-accept` for entries that match
- * nothing. An entry matches a finding of its rule that bears its name; it accepts it while the measured value lies on the
+ * nothing. An entry matches a finding of its rule that bears its name, or a name that its pattern matches; it accepts it while the measured value lies on the
  * safe side of `up_to`. Which side that is follows from the finding: a value below its limit must not fall below the
  * ceiling, one above its limit must not rise above it.
  *
- * `ruleNames` are the rules of this check: an entry for a rule that another command runs is left alone.
+ * `ruleNames` are the rules of this check: an entry for a rule that another command runs is left alone. `madeUp` are names that
+ * the drawing does not have, which no pattern may mean.
  */
 export function acceptFindings(
   findings: readonly Finding[],
@@ -19,6 +21,7 @@ export function acceptFindings(
   entries: readonly AcceptEntry[],
   ruleNames: ReadonlySet<string>,
   show: Show,
+  madeUp: ReadonlySet<string> = new Set(),
 ): Finding[] {
   if (entries.length === 0) return [...findings];
   const byRule = new Map<string, AcceptEntry[]>();
@@ -29,15 +32,28 @@ export function acceptFindings(
   }
   const matched = new Set<AcceptEntry>();
   const judged = findings.map((finding) => {
-    const named = (byRule.get(finding.rule) ?? []).filter(({ at }) => finding.names.includes(at));
+    const named = (byRule.get(finding.rule) ?? []).filter(
+      ({ at }) => acceptedName(at, finding.names, madeUp) !== null,
+    );
     if (named.length === 0 || UNACCEPTABLE_RULES.has(finding.rule)) return finding;
     for (const entry of named) matched.add(entry);
     const taken = named.find((entry) => objection(entry, finding, show) === null);
-    if (taken !== undefined) return { ...finding, accepted: taken };
+    if (taken !== undefined)
+      return { ...finding, message: acceptedMessage(finding, taken, madeUp), accepted: taken };
     return { ...finding, message: `${finding.message}; ${objection(named[0], finding, show)}` };
   });
   const unmatched = entries.filter((entry) => !matched.has(entry) && ruleNames.has(entry.rule));
   return judged.concat(unmatched.map((entry) => unmatchedAccept(entry, findings, notRun)));
+}
+
+/** A pattern may match more than was thought of, so what it matched is said. */
+function acceptedMessage(
+  { message, names }: Finding,
+  { at }: AcceptEntry,
+  madeUp: ReadonlySet<string>,
+): string {
+  const name = acceptedName(at, names, madeUp);
+  return name === null || name === at ? message : `${message}; accepted as ${name}, which ${at} matches`;
 }
 
 /** Why an entry that names the finding does not accept it; null when it does. */

@@ -1,3 +1,5 @@
+import { madeUpNames } from '../chip/accept.ts';
+import type { AcceptEntry } from '../runsheet/types.ts';
 import { acceptFindings } from './accept.ts';
 import type { FindingContext } from './context.ts';
 import type { Rule } from './rule.ts';
@@ -21,9 +23,15 @@ export function findAll(context: FindingContext, rules: readonly Rule[] = RULES)
   }
   const notRun = onePerRule(skipped);
   const ruleNames = new Set(rules.flatMap(({ names }) => names));
-  const findings = acceptFindings(raw, notRun, context.chip.accept, ruleNames, showFor(context)).sort(
-    byUrgency,
-  );
+  const { chip } = context;
+  const findings = acceptFindings(
+    raw,
+    notRun,
+    chip.accept,
+    ruleNames,
+    showFor(context),
+    madeUpNames(chip),
+  ).sort(byUrgency);
   return toReport(findings, notRun);
 }
 
@@ -31,15 +39,20 @@ export function findAll(context: FindingContext, rules: readonly Rule[] = RULES)
  * Cases of one run sheet share its `accept` entries: one that matches a finding in any case is not unmatched in the others.
  */
 export function settleAccepts(reports: readonly FindingReport[]): FindingReport[] {
-  const matched = new Set<number>();
+  const matched = new Set<string>();
   for (const { findings } of reports)
-    for (const { accepted } of findings) if (accepted !== null) matched.add(accepted.line);
+    for (const { accepted } of findings) if (accepted !== null) matched.add(entryKey(accepted));
   return reports.map((report) => {
     const kept = report.findings.filter(
-      ({ unmatched }) => unmatched === undefined || !matched.has(unmatched.line),
+      ({ unmatched }) => unmatched === undefined || !matched.has(entryKey(unmatched)),
     );
     return kept.length === report.findings.length ? report : toReport(kept, report.notRun);
   });
+}
+
+/** Several entries may stand in one line. */
+function entryKey({ line, rule, at }: AcceptEntry): string {
+  return `${line} ${rule} ${at}`;
 }
 
 function toReport(findings: readonly Finding[], notRun: readonly NotRun[]): FindingReport {

@@ -1,3 +1,4 @@
+import { LIMIT_SLACK } from '../chip/limits.ts';
 import type { Sourced } from '../chip/types.ts';
 import type { FindingContext } from './context.ts';
 import type { Finding, NotRun, Severity } from './types.ts';
@@ -80,9 +81,6 @@ export function limitRule<T>(
     },
   };
 }
-
-/** Rounding never decides against the drawing: a limit is passed only by more than this share of it. */
-const LIMIT_SLACK = 1e-9;
 
 export function isBelow(value: number, limit: number): boolean {
   return value < limit - LIMIT_SLACK * Math.abs(limit);

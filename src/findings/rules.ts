@@ -4,6 +4,7 @@ import { endRules } from './ends.ts';
 import { flowRules } from './flow.ts';
 import { levelRules } from './level-sensitive.ts';
 import { networkRules } from './network.ts';
+import { notComputedRules } from './not-computed.ts';
 import { portRules } from './ports.ts';
 import { pressureRules } from './pressure.ts';
 import { pumpRules } from './pump-limit.ts';
@@ -12,12 +13,14 @@ import { regimeRules } from './regime.ts';
 import type { Rule } from './rule.ts';
 import { sectionRules } from './section.ts';
 import { strokeRules } from './strokes.ts';
+import { unevenRules } from './uneven.ts';
 import { wallRules } from './walls.ts';
 import { windowRules } from './windows.ts';
 
 /** Every rule, family by family. A new family is one file and one line here. */
 export const RULES: readonly Rule[] = [
   ...readingRules,
+  ...notComputedRules,
   ...wallRules,
   ...strokeRules,
   ...endRules,
@@ -29,6 +32,7 @@ export const RULES: readonly Rule[] = [
   ...pressureRules,
   ...pumpRules,
   ...windowRules,
+  ...unevenRules,
   ...levelRules,
   ...flowRules,
   ...regimeRules,

@@ -1,3 +1,4 @@
+import { LIMIT_SLACK } from '../chip/limits.ts';
 import type { Nearness } from '../geometry/near.ts';
 import type { Pieces } from '../geometry/pieces.ts';
 import { distanceToSegment } from '../geometry/segment.ts';
@@ -223,7 +224,7 @@ function addThinStretches(
   const { chip } = context;
   const halves = pieces.half[i] + pieces.half[j];
   // The relative slack of a limit, and rounding of coordinates where the limit is nought.
-  const withinMm = halves + limitMm * (1 - 1e-9) - (limitMm === 0 ? -1e-9 * halves : 0);
+  const withinMm = halves + limitMm * (1 - LIMIT_SLACK) - (limitMm === 0 ? -1e-9 * halves : 0);
   const flat = hasFlatEnd(chip, pieces, i) || hasFlatEnd(chip, pieces, j);
   if (!flat && distanceMm >= withinMm) return;
   if (distanceMm <= chip.joinWithinMm && crossesSquarely(pieces, i, j)) return;

@@ -1,3 +1,4 @@
+import { LIMIT_SLACK } from '../chip/limits.ts';
 import { type Closest, type Line, stretchWithin } from './closest.ts';
 import type { FindingContext } from './context.ts';
 import { nearMisses } from './misses.ts';
@@ -38,7 +39,7 @@ export function findWellWalls(
     const r = port.radiusMm + widest;
     const close: { piece: number; gap: Closest; from: number; to: number }[] = [];
     for (const i of index.search(port.xMm - r, port.yMm - r, port.xMm + r, port.yMm + r)) {
-      const limit = limits[pieces.channel[i]] * (1 - 1e-9);
+      const limit = limits[pieces.channel[i]] * (1 - LIMIT_SLACK);
       const gap = gapToHole(chip, pieces, i, port);
       if (gap.distanceMm >= limit) continue;
       const within = stretchWithin(

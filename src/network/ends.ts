@@ -1,4 +1,4 @@
-import { nearestParameter } from '../geometry/segment.ts';
+import { distanceToSegment, nearestParameter } from '../geometry/segment.ts';
 import { isInPieceStrip } from '../geometry/strip.ts';
 import { type Bundles, findBundles } from './bundles.ts';
 import { type Draft, drawnPosition, END_FREE, END_JOINED, endPiece, endPosition } from './draft.ts';
@@ -164,6 +164,7 @@ function goesOnIn(judge: EndJudge, end: number, centreline: number): boolean {
     if (walkedMm > 0 && metInStrip(judge, from, centreline) !== null) return true;
     if (walkedMm + length > mostMm) continue;
     if (membersAt(bundles, from ^ 1).some((e) => e >> 1 === centreline)) return true;
+    seen.add(from ^ 1);
     enter(from ^ 1, walkedMm + length);
   }
   return false;
@@ -177,9 +178,16 @@ function membersAt({ of, first, member }: Bundles, end: number): Int32Array {
   return of[end] < 0 ? member.subarray(0, 0) : member.subarray(first[of[end]], first[of[end] + 1]);
 }
 
-/** Position at which the end's channel met a centreline since it entered that strip; null when it did not. */
+/**
+ * Position at which the end's channel met a centreline since it entered that strip; null when it did not. Its other end,
+ * if that lies on the centreline within the slack, has met it there (rule 2).
+ */
 function metInStrip({ draft, met, strips }: EndJudge, end: number, centreline: number): number | null {
-  const last = lastMeeting(draft, end, centreline, met);
+  const last =
+    lastMeeting(draft, end, centreline, met) ??
+    (isOnCentreline(draft, end ^ 1, centreline) && !isOnCentreline(draft, end, centreline)
+      ? drawnPosition(draft, end ^ 1)
+      : null);
   return last !== null && hasStayedInside(draft, end, last, centreline, strips) ? last : null;
 }
 
@@ -221,6 +229,21 @@ function candidatesOf({ draft, bundles }: EndJudge, end: number): Candidate[] {
 function isInBundle({ around }: Bundles, end: number, centreline: number): boolean {
   if (around[end] < 0) return false;
   return [2 * centreline, 2 * centreline + 1].some((e) => e !== end && around[e] === around[end]);
+}
+
+/** Whether a drawn end lies within the slack of another centreline. */
+function isOnCentreline({ near, pieces, ends, slackMm }: Draft, end: number, centreline: number): boolean {
+  if (centreline === end >> 1) return false;
+  const own = endPiece(pieces, end);
+  for (let k = near.firstPair[own]; k < near.firstPair[own + 1]; k++) {
+    const pair = near.pairOf[k];
+    if (near.pairDistance[pair] > slackMm) continue;
+    const i = near.pairA[pair] === own ? near.pairB[pair] : near.pairA[pair];
+    if (pieces.centreline[i] !== centreline) continue;
+    const [x1, y1, x2, y2] = [pieces.x1[i], pieces.y1[i], pieces.x2[i], pieces.y2[i]];
+    if (distanceToSegment(ends.x[end], ends.y[end], x1, y1, x2, y2) <= slackMm) return true;
+  }
+  return false;
 }
 
 /** Position on the end's centreline of its meeting with another centreline nearest to the end; null when they never met. */

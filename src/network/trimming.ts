@@ -73,6 +73,8 @@ export function findTrims(
     const own = strips.group[c];
     const tryStrip = (group: number): void => {
       if (group === own || memberStamp[group] !== node || triedStamp[group] === arm) return;
+      // Channels of two planes meet in a well alone, and share no etched area.
+      if (pieces.plane[pieces.firstPiece[group]] !== pieces.plane[pieces.firstPiece[c]]) return;
       triedStamp[group] = arm;
       const factor = trimFactor(draft, c, group);
       if (factor >= 1) return;

@@ -32,7 +32,7 @@ export function quantity(
   const exampleUnit = shown.replace(/^[^ ]* ?/, '');
   return scalar(
     shown,
-    { description, examples: [shown], ...(kind === 'ratio' ? { type: ['string', 'number'] } : {}) },
+    { description, examples: [shown], ...(usual.isBare ? { type: ['string', 'number'] } : {}) },
     (text) => {
       const value = parseQuantity(text, kind, exampleUnit);
       checkBound(text, value, bound, noun ?? usual.word, shown);

@@ -31,7 +31,7 @@ export const RULE_MEASURES: ReadonlyMap<string, RuleMeasure> = new Map([
     ['ratio', 'share'],
     ['roof-span', 'tall-wall', 'soft-walls', 'not-laminar', 'curved-flow', 'short-reach'],
   ),
-  ...rules(['ratio', 'share'], ['level-sensitive']),
+  ...rules(['ratio', 'share'], ['level-sensitive', 'uneven-flow']),
   ...rules(['angle'], ['sharp-corner']),
   ...rules(['pressure'], ['over-pressure', 'under-pressure']),
   ...rules(['time'], ['residence-window']),
@@ -65,6 +65,7 @@ export const UNACCEPTABLE_RULES: ReadonlySet<string> = new Set([
   'filled-outline',
   'merged-walls',
   'double-stroke',
+  'not-computed',
 ]);
 
 function rules(

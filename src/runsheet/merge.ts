@@ -1,3 +1,5 @@
+import { isPattern, longestMatch } from './names.ts';
+import type { PortValues, SheetValues } from './schema.ts';
 import type { MapEntry, MapNode, TreeNode } from './tree.ts';
 
 /**
@@ -5,6 +7,7 @@ import type { MapEntry, MapNode, TreeNode } from './tree.ts';
  *
  * Keys that exclude each other replace each other: where the base drives `feed` by pressure and the case by flow, the
  * merged port has the flow and keeps its tubing. An empty value at the top ("ports:") changes nothing.
+ * `open` and `sealed` are a port's condition written short: what else the base says of the port is put back by `keepPorts`.
  */
 export function mergeCase(base: MapNode, changes: MapNode): MapNode {
   return mergeMaps(base, changes, []);
@@ -20,12 +23,52 @@ function mergeMaps(base: MapNode, changes: MapNode, path: readonly string[]): Ma
     }
   }
   for (const [key, change] of changes.entries) {
-    const before = entries.get(key);
+    const before = entries.get(key) ?? coveringPort(base, key, path);
     if (path.length === 0 && change.node.kind === 'text' && change.node.empty) continue;
     const node = before === undefined ? change.node : mergeNodes(before.node, change.node, [...path, key]);
     entries.set(key, { node, line: change.line });
   }
   return { kind: 'map', entries, line: changes.line };
+}
+
+/** A port that the sheet has under a pattern, and the case under a name or a narrower pattern, is still that port. */
+function coveringPort(base: MapNode, key: string, path: readonly string[]): MapEntry | undefined {
+  if (path.length !== 1 || path[0] !== 'ports') return undefined;
+  const pattern = longestMatch([...base.entries.keys()].filter(isPattern), key);
+  return pattern === null ? undefined : base.entries.get(pattern);
+}
+
+/**
+ * The ports of a case with what the change left alone: a port written `open` or `sealed` in the case keeps its tubing,
+ * what it carries and what it is for (nothing, when sealed); one written so in the sheet keeps that condition until the case gives another.
+ */
+export function keepPorts(
+  base: SheetValues,
+  merged: SheetValues,
+  baseRoot: MapNode,
+  changes: MapNode,
+): SheetValues {
+  const before = portsOf(baseRoot);
+  const ports: Record<string, PortValues> = Object.assign(Object.create(null), merged.ports);
+  for (const [name, { node }] of portsOf(changes)) {
+    const key = before.has(name) ? name : longestMatch([...before.keys()].filter(isPattern), name);
+    const port = merged.ports?.[name];
+    const was = key === null ? undefined : base.ports?.[key];
+    if (port === undefined || was === undefined) continue;
+    if (node.kind === 'text') {
+      const expect = port.condition.kind === 'sealed' ? null : was.expect;
+      ports[name] = { ...was, condition: port.condition, expect };
+    } else if (port.condition.kind === 'unset') {
+      ports[name] = { ...port, condition: was.condition };
+    }
+  }
+  return merged.ports === undefined ? merged : { ...merged, ports };
+}
+
+/** What a sheet or a case writes under `ports`. */
+export function portsOf(root: MapNode): ReadonlyMap<string, MapEntry> {
+  const ports = root.entries.get('ports')?.node;
+  return ports?.kind === 'map' ? ports.entries : new Map();
 }
 
 function mergeNodes(base: TreeNode, change: TreeNode, path: readonly string[]): TreeNode {

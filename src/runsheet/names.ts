@@ -36,5 +36,16 @@ export function matches(pattern: string, name: string): boolean {
   return p === pattern.length;
 }
 
+/**
+ * The longest of the patterns that match a name, of equally long ones the first; null when none does. A pattern counts as
+ * the name it is written as: what the result matches holds all that a pattern asked for can match.
+ */
+export function longestMatch(patterns: readonly string[], name: string): string | null {
+  let best: string | null = null;
+  for (const pattern of patterns)
+    if ((best === null || pattern.length > best.length) && matches(pattern, name)) best = pattern;
+  return best;
+}
+
 /** Names that no run sheet can hold: as keys of an object they would be something else. */
 export const UNUSABLE_KEYS: ReadonlySet<string> = new Set(['__proto__', 'constructor', 'prototype']);

@@ -1,8 +1,9 @@
 import { createHash } from 'node:crypto';
 import * as v from 'valibot';
 import { InputError } from '../errors.ts';
-import { mergeCase } from './merge.ts';
-import { isPattern, layerKey } from './names.ts';
+import { keepPorts, mergeCase, portsOf } from './merge.ts';
+import { isPattern, layerKey, matches } from './names.ts';
+import { nearest } from './nearest.ts';
 import { type KeyPath, pathText } from './path-text.ts';
 import { quote } from './quote.ts';
 import { caseSchema, SHEET_KEYS, type SheetValues, sheetSchema } from './schema.ts';
@@ -10,11 +11,13 @@ import { lineAt, type MapEntry, type MapNode, parseTree, type TreeNode, toPlain 
 import type {
   AcceptEntry,
   ChannelEntry,
+  ConcentrationTarget,
   LayerEntry,
   Limits,
   PortEntry,
   PumpLimitEntry,
   RunSheet,
+  Solute,
   TargetEntry,
   Tolerances,
   Window,
@@ -31,8 +34,8 @@ import type {
 export function parseRunSheet(text: string, file: string): RunSheet {
   const source: Source = { file, text, sha256: createHash('sha256').update(text, 'utf8').digest('hex') };
   const root = withoutEmpty(parseTree(text, file));
-  const sheet = toRunSheet(validate(sheetSchema, root, file, []), root, source, []);
-  return { ...sheet, cases: parseCases(root, source) };
+  const values = validate(sheetSchema, root, file, []);
+  return { ...toRunSheet(values, root, source, []), cases: parseCases(root, values, source) };
 }
 
 interface Source {
@@ -68,7 +71,7 @@ function withEmptyCases(node: TreeNode): TreeNode {
   return { ...node, entries };
 }
 
-function parseCases(root: MapNode, source: Source): RunSheet['cases'] {
+function parseCases(root: MapNode, values: SheetValues, source: Source): RunSheet['cases'] {
   const cases = root.entries.get('cases');
   // sheetSchema has seen that cases is a map of maps.
   if (cases === undefined || cases.node.kind !== 'map') return [];
@@ -89,13 +92,33 @@ function parseCases(root: MapNode, source: Source): RunSheet['cases'] {
         `${pathText(['cases', name, 'cases'])}: a case can't have cases of its own`,
       );
     }
-    const merged = mergeCase(base, node);
     const prefix = ['cases', name];
-    return {
-      name,
-      sheet: toRunSheet(validate(caseSchema, merged, source.file, prefix), merged, source, prefix),
-    };
+    refuseHiddenPorts(base, node, source.file, prefix);
+    const merged = mergeCase(base, node);
+    const changed = keepPorts(values, validate(caseSchema, merged, source.file, prefix), base, node);
+    return { name, sheet: toRunSheet(changed, merged, source, prefix) };
   });
+}
+
+/**
+ * A pattern that only the case has says nothing about a port for which the sheet has a name or a longer pattern: those go
+ * before. Rather than run such a port as if the case had not been written, stop.
+ */
+function refuseHiddenPorts(base: MapNode, changes: MapNode, file: string, prefix: KeyPath): void {
+  const given = portsOf(base);
+  for (const [pattern, { line }] of portsOf(changes)) {
+    if (!isPattern(pattern) || given.has(pattern)) continue;
+    const hidden = [...given.keys()].find((name) => isHiddenBy(pattern, name));
+    if (hidden === undefined) continue;
+    throw new InputError(
+      `${file}:${line}`,
+      `${pathText([...prefix, 'ports', pattern])}: does not change ${quote(hidden)}, which the sheet gives an entry of its own; write in the case the names that the sheet has`,
+    );
+  }
+}
+
+function isHiddenBy(pattern: string, name: string): boolean {
+  return matches(pattern, name) && (!isPattern(name) || name.length >= pattern.length);
 }
 
 interface Fault {
@@ -143,6 +166,7 @@ function toRunSheet(values: SheetValues, root: MapNode, source: Source, prefix: 
   };
   refuseLayerTwins(values, refuse);
   refusePatterns(values, refuse);
+  refuseUndeclaredSolutes(values, refuse);
   return {
     ...source,
     title: values.title ?? null,
@@ -174,7 +198,8 @@ function toRunSheet(values: SheetValues, root: MapNode, source: Source, prefix: 
         lengthM: piece.length,
         temperatureK: piece.temperature ?? null,
       }));
-      return { condition: port.condition, tubing, expect: port.expect, line: at('ports', name) };
+      const { condition, expect, concentration } = port;
+      return { condition, tubing, expect, concentration, line: at('ports', name) };
     }),
     channels: mapNames(values.channels, (channel, name): ChannelEntry => {
       const { wall_shear: shear, residence_time: time, flow, walls } = channel;
@@ -183,10 +208,33 @@ function toRunSheet(values: SheetValues, root: MapNode, source: Source, prefix: 
         residenceTime: time === undefined ? null : toWindow(time),
         flow: flow === undefined ? null : toWindow(flow),
         walls: walls ?? 'floor',
+        even: channel.even ?? null,
+        concentration:
+          channel.concentration === undefined
+            ? null
+            : mapNames(channel.concentration, (one) => ({ ...toWindow(one), over: one.over ?? null })),
+        mixing: channel.mixing === undefined ? null : mapNames(channel.mixing, ({ min }) => min),
         line: at('channels', name),
       };
     }),
-    targets: (values.targets ?? []).map((target, i): TargetEntry => ({ ...target, line: at('targets', i) })),
+    solutes: mapNames(
+      values.solutes,
+      ({ diffusion, unit }): Solute => ({ diffusionM2s: diffusion, unit: unit ?? null }),
+    ),
+    junctions: values.junctions ?? null,
+    switch:
+      values.switch === undefined
+        ? null
+        : {
+            from: values.switch.from ?? null,
+            reach: values.switch.reach ?? null,
+            to: values.switch.to ?? null,
+            withinS: values.switch.within ?? null,
+            line: at('switch'),
+          },
+    fields: values.fields ?? [],
+    pillars: values.pillars ?? [],
+    ...toTargets(values, at),
     pumpLimits: mapNames(values.pump_limits, (limit, name): PumpLimitEntry => {
       const line = at('pump_limits', name);
       const { max_pressure, min_pressure, max_flow } = limit;
@@ -206,6 +254,20 @@ function toRunSheet(values: SheetValues, root: MapNode, source: Source, prefix: 
   };
 }
 
+function toTargets(
+  { targets = [] }: SheetValues,
+  at: (...path: KeyPath) => number,
+): Pick<RunSheet, 'targets' | 'concentrationTargets'> {
+  const computed: TargetEntry[] = [];
+  const ofConcentration: ConcentrationTarget[] = [];
+  for (const [index, target] of targets.entries()) {
+    const line = at('targets', index);
+    if (target.quantity === 'concentration') ofConcentration.push({ ...target, index, line });
+    else computed.push({ ...target, index, line });
+  }
+  return { targets: computed, concentrationTargets: ofConcentration };
+}
+
 type Refuse = (path: KeyPath, message: string) => never;
 
 function refuseLayerTwins(values: SheetValues, refuse: Refuse): void {
@@ -223,20 +285,53 @@ function refuseLayerTwins(values: SheetValues, refuse: Refuse): void {
 }
 
 function refusePatterns(values: SheetValues, refuse: Refuse): void {
-  const count = (names: readonly string[]): number => names.filter(isPattern).length;
-  if (count(Object.keys(values.channels ?? {})) > MOST_PATTERNS) {
-    refuse(['channels'], `more than the limit "patterns" of ${MOST_PATTERNS} names with *`);
+  const limit = (path: KeyPath, names: readonly string[]): void => {
+    if (names.filter(isPattern).length <= MOST_PATTERNS) return;
+    refuse(path, `more than the limit "patterns" of ${MOST_PATTERNS} names with *`);
+  };
+  const { targets = [], accept = [] } = values;
+  limit(['ports'], Object.keys(values.ports ?? {}));
+  limit(['channels'], Object.keys(values.channels ?? {}));
+  limit(['ignore'], values.ignore ?? []);
+  limit(
+    ['targets'],
+    targets.map(({ name }) => name),
+  );
+  limit(
+    ['accept'],
+    accept.map(({ at }) => at),
+  );
+  for (const [i, { by }] of targets.entries()) {
+    if (isPattern(by))
+      refuse(['targets', i, 'by'], `${quote(by)} is a pattern; a target is met by one port, named in full`);
   }
-  if (count(values.ignore ?? []) > MOST_PATTERNS) {
-    refuse(['ignore'], `more than the limit "patterns" of ${MOST_PATTERNS} names with *`);
+}
+
+/** What a fluid carries must be one of the sheet's solutes: a name misspelt would be another solute, and nought of the one meant. */
+function refuseUndeclaredSolutes(values: SheetValues, refuse: Refuse): void {
+  const declared = Object.keys(values.solutes ?? {});
+  const known = new Set(declared);
+  const look = (path: KeyPath, names: Iterable<string>): void => {
+    for (const name of names) {
+      if (known.has(name)) continue;
+      const near = nearest(name, declared);
+      const hint =
+        declared.length === 0
+          ? `write for example solutes: { ${name}: { diffusion: 5e-10 m^2/s, unit: uM } }`
+          : near === null
+            ? `known here: ${declared.slice(0, 5).map(quote).join(', ')}`
+            : `did you mean ${quote(near)}?`;
+      refuse([...path, name], `${quote(name)} is not among the solutes; ${hint}`);
+    }
+  };
+  for (const [name, port] of Object.entries(values.ports ?? {}))
+    look(['ports', name, 'concentration'], Object.keys(port.concentration ?? {}));
+  for (const [name, { concentration, mixing }] of Object.entries(values.channels ?? {})) {
+    look(['channels', name, 'concentration'], Object.keys(concentration ?? {}));
+    look(['channels', name, 'mixing'], Object.keys(mixing ?? {}));
   }
-  for (const [i, target] of (values.targets ?? []).entries()) {
-    if (!isPattern(target.name)) continue;
-    refuse(
-      ['targets', i, target.on],
-      `${quote(target.name)} is a pattern; a target is one ${target.on}, named in full`,
-    );
-  }
+  for (const [i, target] of (values.targets ?? []).entries())
+    if (target.quantity === 'concentration') look(['targets', i, 'concentration'], [target.solute]);
 }
 
 function inMm(metres: number): number {

@@ -27,6 +27,7 @@ import { nearest } from './nearest.ts';
 import { quote } from './quote.ts';
 import type {
   AcceptEntry,
+  ConcentrationTarget,
   FluidSpec,
   PortCondition,
   ProcessName,
@@ -48,7 +49,9 @@ const PROCESSES: readonly ProcessName[] = [
 ];
 
 const PORT_EXAMPLE = '{ pressure: 12 kPa }';
-const WINDOW_EXAMPLE = '{ min: 1 s, max: 60 s }';
+const SHEAR_EXAMPLE = '{ min: 0.05 Pa, max: 0.5 Pa }';
+const CONCENTRATION_EXAMPLE = '{ min: 2, max: 4, over: 95 % }';
+const SOLUTE_EXAMPLE = '{ diffusion: 5e-10 m^2/s, unit: uM }';
 const TARGET_EXAMPLE = '{ channel: lane-1, wall_shear: 0.3 Pa, by: feed }';
 
 const length = (noun: string, example: string, description: string): Field<number> =>
@@ -58,6 +61,23 @@ const depth = (description: string): Field<number> => length('a depth', '50 um',
 
 const ratio = (noun: string, example: string, description: string): Field<number> =>
   quantity('ratio', { bound: 'above 0', noun, example, description });
+
+/** Above 0 % and at most 100 %, as a fraction of 1. */
+const share = (example: string, description: string): Field<number> =>
+  scalar(example, { description, examples: [example] }, (written) => {
+    const value = parseQuantity(written, 'share', '%');
+    if (value > 0 && value <= 1) return value;
+    throw new QuantityError(`${quote(written)} is not above 0 % and at most 100 %; ${hint(example)}`);
+  });
+
+const concentration = (description: string): Field<number> =>
+  quantity('concentration', { bound: 'not below 0', description });
+
+/** Something for each solute, by its name. */
+const bySolute = <T>(value: Field<T>, example: string): Field<Readonly<Record<string, T>>> =>
+  checked(named(value, example), (given) =>
+    Object.keys(given).length > 0 ? null : { message: `names no solute; ${hint(example)}` },
+  );
 
 const temperature = (description: string): Field<number> =>
   quantity('temperature', { bound: 'any', example: '37 degC', description });
@@ -174,6 +194,10 @@ type TubingKeys = v.InferOutput<typeof tubingPiece>;
 
 const tubing: Field<readonly TubingKeys[]> = byShape<readonly TubingKeys[]>(
   {
+    text: v.pipe(
+      word(['none'], 'No tubing: takes away in a case what the sheet gives.'),
+      v.transform((): readonly TubingKeys[] => []),
+    ),
     map: v.pipe(
       tubingPiece,
       v.transform((piece) => [piece]),
@@ -183,17 +207,21 @@ const tubing: Field<readonly TubingKeys[]> = byShape<readonly TubingKeys[]>(
   hint('{ bore: 0.5 mm, length: 300 mm }'),
 );
 
-interface PortValues {
+/** What the schema hands on for a port. */
+export interface PortValues {
   readonly condition: PortCondition;
   readonly tubing: readonly TubingKeys[];
   readonly expect: 'in' | 'out' | null;
+  readonly concentration: Readonly<Record<string, number>> | null;
 }
 
 const port = byShape<PortValues>(
   {
     text: v.pipe(
       word(['open', 'sealed'], 'An open well (0 Pa) or a sealed one.'),
-      v.transform((kind): PortValues => ({ condition: { kind }, tubing: [], expect: null })),
+      v.transform(
+        (kind): PortValues => ({ condition: { kind }, tubing: [], expect: null, concentration: null }),
+      ),
     ),
     map: changed(
       keys(
@@ -212,6 +240,12 @@ const port = byShape<PortValues>(
           ),
           tubing: v.optional(described(tubing, 'One piece, or several from the far end to the chip.')),
           expect: v.optional(word(['in', 'out'], 'What the port is for: fluid goes in or comes out.')),
+          concentration: v.optional(
+            described(
+              bySolute(concentration('In the solute’s own unit.'), '{ drug: 10 }'),
+              'What of each solute the fluid of this port carries; 0 of those not named.',
+            ),
+          ),
         },
         PORT_EXAMPLE,
       ),
@@ -225,7 +259,12 @@ const port = byShape<PortValues>(
           return { message: `has ${both}; a port has one of pressure, flow and head; ${hint(PORT_EXAMPLE)}` };
         }
         const condition: PortCondition = conditions[0] ?? { kind: 'unset' };
-        return { condition, tubing: given.tubing ?? [], expect: given.expect ?? null };
+        return {
+          condition,
+          tubing: given.tubing ?? [],
+          expect: given.expect ?? null,
+          concentration: given.concentration ?? null,
+        };
       },
       isComplaint,
     ),
@@ -238,10 +277,10 @@ interface WindowKeys {
   readonly max?: number | undefined;
 }
 
-const window = <T extends WindowKeys>(field: Field<T>): Field<T> =>
+const window = <T extends WindowKeys>(field: Field<T>, example: string): Field<T> =>
   checked(field, ({ min, max }) => {
     if (min === undefined && max === undefined)
-      return { message: `needs min, max or both; ${hint(WINDOW_EXAMPLE)}` };
+      return { message: `needs min, max or both; ${hint(example)}` };
     if (min === undefined || max === undefined || min <= max) return null;
     return { message: 'has min above max; swap them' };
   });
@@ -251,22 +290,37 @@ const plainWindow = (
   bound: 'any' | 'not below 0',
   example: string,
   description: string,
-): Field<WindowKeys> =>
-  window(
+): Field<WindowKeys> => {
+  const shown = `{ min: ${example} }`;
+  return window(
     described(
       keys(
         {
           min: v.optional(quantity(kind, { bound, example, description: 'Lower end, included.' })),
           max: v.optional(quantity(kind, { bound, example, description: 'Upper end, included.' })),
         },
-        `{ min: ${example} }`,
+        shown,
       ),
       description,
     ),
+    shown,
   );
+};
 
 const shearBound = (description: string): Field<number> =>
   quantity('wall_shear', { bound: 'not below 0', description });
+
+const concentrationWindow = window(
+  keys(
+    {
+      min: v.optional(concentration('Lower end, included.')),
+      max: v.optional(concentration('Upper end, included.')),
+      over: v.optional(share('95 %', 'Share of the flow that must lie inside; all of it when not given.')),
+    },
+    CONCENTRATION_EXAMPLE,
+  ),
+  CONCENTRATION_EXAMPLE,
+);
 
 const channel = keys(
   {
@@ -276,22 +330,11 @@ const channel = keys(
           {
             min: v.optional(shearBound('Lower end for the floor’s mean.')),
             max: v.optional(shearBound('Upper end for the floor’s peak.')),
-            over: v.optional(
-              scalar(
-                '80 %',
-                { description: 'Share of the floor’s width that must lie inside.', examples: ['80 %'] },
-                (written) => {
-                  const share = parseQuantity(written, 'share');
-                  if (share > 0 && share <= 1) return share;
-                  throw new QuantityError(
-                    `${quote(written)} is not above 0 % and at most 100 %; ${hint('80 %')}`,
-                  );
-                },
-              ),
-            ),
+            over: v.optional(share('80 %', 'Share of the floor’s width that must lie inside.')),
           },
-          '{ min: 0.05 Pa, max: 0.5 Pa }',
+          SHEAR_EXAMPLE,
         ),
+        SHEAR_EXAMPLE,
       ),
     ),
     residence_time: v.optional(
@@ -301,15 +344,36 @@ const channel = keys(
     walls: v.optional(
       word(['floor', 'all'], 'Where wall_shear is judged: on the floor, or on the sides too.'),
     ),
+    even: v.optional(
+      share(
+        '5 %',
+        'How far the flow of each channel that matches this name may lie from their mean, whatever other entry it has.',
+      ),
+    ),
+    concentration: v.optional(
+      described(
+        bySolute(concentrationWindow, `{ drug: ${CONCENTRATION_EXAMPLE} }`),
+        'What the fluid must carry of each solute.',
+      ),
+    ),
+    mixing: v.optional(
+      described(
+        bySolute(
+          keys({ min: share('90 %', '0 % is unmixed, 100 % uniform.') }, '{ min: 90 % }'),
+          '{ drug: { min: 90 % } }',
+        ),
+        'How far each solute must be mixed at the channel’s end.',
+      ),
+    ),
   },
-  '{ wall_shear: { min: 0.05 Pa, max: 0.5 Pa } }',
+  `{ wall_shear: ${SHEAR_EXAMPLE} }`,
 );
 
 /* ---------- targets and pumps ---------- */
 
 const targetValue = (
   kind: Quantity,
-  bound: 'any' | 'above 0',
+  bound: 'any' | 'above 0' | 'not below 0',
   example: string,
   description: string,
 ): Field<number | Window> =>
@@ -324,17 +388,50 @@ const targetValue = (
     hint(example),
   );
 
-const TARGET_QUANTITIES: Readonly<Record<'channel' | 'port' | 'node', readonly TargetQuantity[]>> = {
-  channel: ['flow', 'wall_shear', 'velocity', 'residence_time'],
-  port: ['flow', 'pressure'],
+type AnyTargetQuantity = TargetQuantity | ConcentrationTarget['quantity'];
+
+const TARGET_QUANTITIES: Readonly<Record<'channel' | 'port' | 'node', readonly AnyTargetQuantity[]>> = {
+  channel: ['flow', 'wall_shear', 'velocity', 'residence_time', 'concentration'],
+  port: ['flow', 'pressure', 'concentration'],
   node: ['pressure'],
 };
+
+interface WantedConcentration {
+  readonly solute: string;
+  readonly value: number | Window;
+}
+
+const wantedConcentration: Field<WantedConcentration> = changed(
+  named(
+    targetValue('concentration', 'not below 0', '3', 'Wanted concentration, in the solute’s own unit.'),
+    '{ drug: 3 }',
+  ),
+  (given): WantedConcentration | Complaint => {
+    const [only, ...others] = Object.entries(given);
+    if (only !== undefined && others.length === 0) return { solute: only[0], value: only[1] };
+    return {
+      message: `names ${others.length === 0 ? 'no solute' : `${others.length + 1} solutes`}; a target is on one; ${hint('{ drug: 3 }')}`,
+    };
+  },
+  isComplaint,
+);
+
+const QUANTITY_KEYS = [
+  'flow',
+  'wall_shear',
+  'velocity',
+  'residence_time',
+  'pressure',
+  'concentration',
+] as const;
+
+type TargetValues = Omit<TargetEntry, 'line' | 'index'> | Omit<ConcentrationTarget, 'line' | 'index'>;
 
 const target = changed(
   keys(
     {
       channel: v.optional(text('The channel to be set.', 'lane-1')),
-      reach: v.optional(text('Which reach, for a channel of several.', 'lane-1/2')),
+      reach: v.optional(text('Which reach, for a channel of several.', 'lane-1:2')),
       port: v.optional(text('The port to be set.', 'waste')),
       node: v.optional(text('The node to be set.', 'junction-1')),
       flow: v.optional(
@@ -346,12 +443,13 @@ const target = changed(
       velocity: v.optional(targetValue('velocity', 'any', '1 mm/s', 'Wanted mean velocity.')),
       residence_time: v.optional(targetValue('time', 'above 0', '10 s', 'Wanted mean residence time.')),
       pressure: v.optional(targetValue('pressure', 'any', '2 kPa', 'Wanted pressure in the chip.')),
+      concentration: v.optional(described(wantedConcentration, 'Wanted mean concentration of one solute.')),
       at: v.optional(word(['mean', 'peak'], 'Which wall shear; mean when not given.')),
       by: text('The port whose setting is to be found.', 'feed'),
     },
     TARGET_EXAMPLE,
   ),
-  (given): Omit<TargetEntry, 'line'> | Complaint => {
+  (given): TargetValues | Complaint => {
     const places = (['channel', 'port', 'node'] as const).filter((place) => given[place] !== undefined);
     const on = places[0];
     if (on === undefined || places.length > 1) {
@@ -360,9 +458,7 @@ const target = changed(
         message: `has ${found}; exactly one of channel, port and node is needed; ${hint(TARGET_EXAMPLE)}`,
       };
     }
-    const quantities = (['flow', 'wall_shear', 'velocity', 'residence_time', 'pressure'] as const).filter(
-      (name) => given[name] !== undefined,
-    );
+    const quantities = QUANTITY_KEYS.filter((name) => given[name] !== undefined);
     const what = quantities[0];
     if (what === undefined || quantities.length > 1) {
       const found = quantities.length === 0 ? 'no quantity' : quantities.join(' and ');
@@ -379,15 +475,9 @@ const target = changed(
     }
     if (given.reach !== undefined && on !== 'channel')
       return { message: 'goes with channel only; leave it out', key: 'reach' };
-    return {
-      on,
-      name: given[on]!,
-      reach: given.reach ?? null,
-      quantity: what,
-      at: given.at ?? 'mean',
-      value: given[what]!,
-      by: given.by,
-    };
+    const place = { on, name: given[on]!, reach: given.reach ?? null, by: given.by };
+    if (what === 'concentration') return { ...place, quantity: what, ...given[what]! };
+    return { ...place, quantity: what, at: given.at ?? 'mean', value: given[what]! };
   },
   isComplaint,
 );
@@ -540,11 +630,29 @@ const date = scalar(
   },
 );
 
+/** A pattern of stars alone would take on everything, also what nobody has looked at. */
+const checkedName = scalar(
+  'lane-1',
+  {
+    description: 'Name of the channel, port or layer concerned; * matches any run of characters.',
+    examples: ['lane-1', 'lane-*'],
+    type: ['string', 'number'],
+  },
+  (written) => {
+    const name = written.trim();
+    if (name === '') throw new QuantityError(`is empty; ${hint('lane-1')}`);
+    if (!/^\*+$/.test(name)) return written;
+    throw new QuantityError(
+      `${quote(name)} would take on whatever the rule finds anywhere; name what was looked at; ${hint('lane-*')}`,
+    );
+  },
+);
+
 const accept = changed(
   keys(
     {
       rule: ruleName,
-      at: text('Name of the channel, port or layer concerned.', 'lane-1'),
+      at: checkedName,
       up_to: v.optional(
         scalar(
           '35 um',
@@ -653,7 +761,10 @@ const entries = {
     length('a distance', '1 um', 'Slack of every "on" and "inside" when channels are joined.'),
   ),
   joints: v.optional(
-    word(['resolved', 'centreline'], 'Whether corners and junctions add resistance of their own.'),
+    word(
+      ['resolved', 'centreline', 'computed'],
+      'Whether corners and junctions add resistance of their own: from tables, none, or computed one by one.',
+    ),
   ),
   process: v.optional(word(PROCESSES, 'How the chip is made; gives usual limits.')),
   fluid: v.optional(fluid),
@@ -667,6 +778,56 @@ const entries = {
     described(
       named(channel, '{ "lane-*": { wall_shear: { max: 0.5 Pa } } }'),
       'Windows by name: exact name first, then the longest pattern.',
+    ),
+  ),
+  solutes: v.optional(
+    described(
+      named(
+        keys(
+          {
+            diffusion: quantity('diffusion', { bound: 'above 0', description: 'Diffusion coefficient.' }),
+            unit: v.optional(text('Unit of its concentrations: printed, not converted.', 'uM')),
+          },
+          SOLUTE_EXAMPLE,
+        ),
+        `{ drug: ${SOLUTE_EXAMPLE} }`,
+      ),
+      'What the fluids carry.',
+    ),
+  ),
+  junctions: v.optional(
+    word(['laminar', 'mixed'], 'Whether streams stay side by side and diffuse (the default), or mix wholly.'),
+  ),
+  switch: v.optional(
+    described(
+      keys(
+        {
+          from: v.optional(
+            described(list(text('A port.', 'feed'), '[feed]'), 'Ports whose fluid changes; all that feed.'),
+          ),
+          reach: v.optional(
+            text('Where the change must have come; * matches any run of characters.', 'lane-*'),
+          ),
+          to: v.optional(share('95 %', 'Share of the final change.')),
+          within: v.optional(
+            quantity('time', { bound: 'above 0', example: '2 min', description: 'Time it may take.' }),
+          ),
+        },
+        '{ from: [feed], reach: "lane-*", to: 95 %, within: 2 min }',
+      ),
+      'Change of fluid at the supplies, and how soon it must have arrived.',
+    ),
+  ),
+  fields: v.optional(
+    described(
+      list(text('A stroke or a filled shape.', 'chamber'), '[chamber]'),
+      'Chambers whose floor is computed in 2-D.',
+    ),
+  ),
+  pillars: v.optional(
+    described(
+      list(text('A layer.', 'posts'), '[posts]'),
+      'Layers whose filled shapes stand in the chambers; none of them is a port, channel or outline.',
     ),
   ),
   targets: v.optional(described(list(target, `[${TARGET_EXAMPLE}]`), 'What the command pump must reach.')),

@@ -30,6 +30,8 @@ export interface PortEntry extends Placed {
   /** From the far end to the chip; empty without tubing. */
   readonly tubing: readonly TubingPiece[];
   readonly expect: 'in' | 'out' | null;
+  /** By solute, in its own unit; null when nothing is said. */
+  readonly concentration: Readonly<Record<string, number>> | null;
 }
 
 export type LayerEntry = Placed &
@@ -43,16 +45,41 @@ export type LayerEntry = Placed &
     | { readonly kind: 'ignore' }
   );
 
-export interface ShearWindow extends Window {
-  /** Share of the floor's width that must lie inside, 0…1; null when not asked. */
+export interface ShareWindow extends Window {
+  /** Share that must lie inside, of the floor's width (shear) or of the flow (concentration), 0…1; null when not asked. */
   readonly over: number | null;
 }
+
+export type ShearWindow = ShareWindow;
 
 export interface ChannelEntry extends Placed {
   readonly wallShear: ShearWindow | null;
   readonly residenceTime: Window | null;
   readonly flow: Window | null;
   readonly walls: 'floor' | 'all';
+  /** Share of their mean by which the flows of all channels of this name may differ from it, 0…1; null when not asked. */
+  readonly even: number | null;
+  /** By solute, in its own unit; `over` is a share of the flow. null when not asked. */
+  readonly concentration: Readonly<Record<string, ShareWindow>> | null;
+  /** By solute: the least mixing, 0…1; null when not asked. */
+  readonly mixing: Readonly<Record<string, number>> | null;
+}
+
+export interface Solute {
+  /** m²/s */
+  readonly diffusionM2s: number;
+  /** Printed, not converted. */
+  readonly unit: string | null;
+}
+
+export interface SwitchEntry extends Placed {
+  /** Ports; null: all that feed. */
+  readonly from: readonly string[] | null;
+  /** Name or pattern of reaches; null: nothing is asked. */
+  readonly reach: string | null;
+  /** Share of the final change, 0…1. */
+  readonly to: number | null;
+  readonly withinS: number | null;
 }
 
 export type FluidSpec =
@@ -62,17 +89,30 @@ export type FluidSpec =
 
 export type TargetQuantity = 'flow' | 'wall_shear' | 'velocity' | 'residence_time' | 'pressure';
 
-export interface TargetEntry extends Placed {
+interface AnyTarget extends Placed {
+  /** Place in the run sheet's list, from 0. */
+  readonly index: number;
   readonly on: 'channel' | 'port' | 'node';
   readonly name: string;
   readonly reach: string | null;
+  /** The port whose setting is to be found. */
+  readonly by: string;
+}
+
+export interface TargetEntry extends AnyTarget {
   readonly quantity: TargetQuantity;
   /** Only for wall_shear; 'mean' by default. */
   readonly at: 'mean' | 'peak';
   /** One value, or a window to be kept. SI. */
   readonly value: number | Window;
-  /** The port whose setting is to be found. */
-  readonly by: string;
+}
+
+/** Kept apart from the other targets: what fluids carry is not computed yet. */
+export interface ConcentrationTarget extends AnyTarget {
+  readonly quantity: 'concentration';
+  readonly solute: string;
+  /** In the solute's own unit. */
+  readonly value: number | Window;
 }
 
 export interface PumpLimitEntry extends Placed {
@@ -168,7 +208,7 @@ export interface RunSheet {
   /** Names or patterns, * matches any run of characters. */
   readonly ignore: readonly string[];
   readonly joinWithinMm: number | null;
-  readonly joints: 'resolved' | 'centreline' | null;
+  readonly joints: 'resolved' | 'centreline' | 'computed' | null;
   readonly process: ProcessName | null;
   readonly fluid: FluidSpec | null;
   readonly temperatureK: number | null;
@@ -177,7 +217,15 @@ export interface RunSheet {
   readonly ports: Readonly<Record<string, PortEntry>>;
   /** By name or pattern, in the order written. */
   readonly channels: Readonly<Record<string, ChannelEntry>>;
+  readonly solutes: Readonly<Record<string, Solute>>;
+  readonly junctions: 'laminar' | 'mixed' | null;
+  readonly switch: SwitchEntry | null;
+  /** Names of strokes and filled shapes. */
+  readonly fields: readonly string[];
+  /** Names of layers. */
+  readonly pillars: readonly string[];
   readonly targets: readonly TargetEntry[];
+  readonly concentrationTargets: readonly ConcentrationTarget[];
   readonly pumpLimits: Readonly<Record<string, PumpLimitEntry>>;
   readonly limits: Limits;
   readonly tolerances: Tolerances | null;

@@ -22,7 +22,9 @@ export type Quantity =
   | 'temperature_difference'
   | 'angle'
   | 'share'
-  | 'ratio';
+  | 'ratio'
+  | 'diffusion'
+  | 'concentration';
 
 /** Text that is not the quantity asked for. The message says what is wrong and gives a right example; the caller adds where. */
 export class QuantityError extends Error {
@@ -43,9 +45,8 @@ export function parseQuantity(text: string, quantity: Quantity, exampleUnit?: st
   const { value, numberText, unitText } = splitNumber(text, kind, unitShown);
   const example = hint(`${numberText} ${unitShown}`.trim());
   const usual = hint(`${kind.exampleNumber} ${unitShown}`.trim());
-  if (quantity === 'ratio') {
-    if (unitText !== '')
-      throw new QuantityError(`${quote(text)} has a unit; this is a plain ratio; ${example}`);
+  if (kind.plain !== null) {
+    if (unitText !== '') throw new QuantityError(`${quote(text)} has a unit; ${kind.plain}; ${example}`);
     refuseBeyond(text, value, quantity, usual);
     return value;
   }
@@ -90,6 +91,8 @@ const SIZES: Readonly<Record<Quantity, readonly [number, number]>> = {
   angle: [0, 1e3],
   share: [1e-12, 1e9],
   ratio: [1e-12, 1e12],
+  diffusion: [1e-30, 1],
+  concentration: [1e-30, 1e30],
 };
 
 function refuseBeyond(text: string, si: number, quantity: Quantity, usual: string): void {
@@ -133,10 +136,14 @@ export function formatQuantity(valueSi: number, unitText: string, quantity: Quan
   return unitText.trim() === '%' ? `${digits} %` : `${digits} ${unitText.trim()}`;
 }
 
-/** What a quantity is called in a sentence ("a pressure"), and a right example of it ("12 kPa"). */
-export function describeQuantity(quantity: Quantity): { readonly word: string; readonly example: string } {
-  const { word, exampleNumber, exampleUnit } = KINDS[quantity];
-  return { word, example: `${exampleNumber} ${exampleUnit}`.trim() };
+/** What a quantity is called in a sentence ("a pressure"), a right example of it ("12 kPa"), and whether it is a bare number. */
+export function describeQuantity(quantity: Quantity): {
+  readonly word: string;
+  readonly example: string;
+  readonly isBare: boolean;
+} {
+  const { word, exampleNumber, exampleUnit, plain } = KINDS[quantity];
+  return { word, example: `${exampleNumber} ${exampleUnit}`.trim(), isBare: plain !== null };
 }
 
 interface Kind {
@@ -145,6 +152,8 @@ interface Kind {
   readonly exampleNumber: string;
   readonly dimension: string;
   readonly spellings: readonly string[];
+  /** Why it has no unit, for a quantity that is a bare number; null for the others. */
+  readonly plain: string | null;
 }
 
 interface Scale {
@@ -237,7 +246,15 @@ const KINDS: Readonly<Record<Quantity, Kind>> = {
   temperature_difference: kind('a temperature difference', '1', 'degC', 'K', ['degC', '°C', 'K', 'degF']),
   angle: kind('an angle', '30', 'deg', 'rad', ['deg', '°', 'rad']),
   share: kind('a percentage', '80', '%', null, ['%']),
-  ratio: { word: 'a plain ratio', exampleNumber: '10', exampleUnit: '', dimension: RATIO, spellings: [] },
+  ratio: bare('a plain ratio', '10', 'this is a plain ratio'),
+  diffusion: kind('a diffusion coefficient', '5e-10', 'm^2/s', 'm^2/s', [
+    ...['m^2/s', 'm2/s', 'm²/s', 'cm^2/s', 'mm^2/s', 'um^2/s', 'µm^2/s', 'µm²/s'],
+  ]),
+  concentration: bare(
+    'a concentration',
+    '10',
+    'a concentration is a bare number, its unit stands under solutes',
+  ),
 };
 
 function kind(
@@ -248,7 +265,11 @@ function kind(
   known: readonly string[],
 ): Kind {
   const dimension = siUnit === null ? RATIO : dimensionOf(new Unit(1, siUnit));
-  return { word, exampleNumber, exampleUnit, dimension, spellings: known };
+  return { word, exampleNumber, exampleUnit, dimension, spellings: known, plain: null };
+}
+
+function bare(word: string, exampleNumber: string, plain: string): Kind {
+  return { word, exampleNumber, exampleUnit: '', dimension: RATIO, spellings: [], plain };
 }
 
 function spellings(quantity: Quantity): readonly string[] {

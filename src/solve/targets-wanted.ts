@@ -1,4 +1,6 @@
-import { InputError } from '../errors.ts';
+import { refuse } from '../chip/complain.ts';
+import { refuseSeveral } from '../chip/targets.ts';
+import { findNodes } from '../network/find-node.ts';
 import type { Network } from '../network/types.ts';
 import { sectionForm } from '../physics/section.ts';
 import { nearest } from '../runsheet/nearest.ts';
@@ -53,7 +55,8 @@ export function readTargets(network: Network): readonly Wanted[] {
   const { sheet } = network.chip;
   if (sheet === null) return [];
   refuseSharedPorts(sheet);
-  return sheet.targets.map((entry, index): Wanted => {
+  return sheet.targets.map((entry): Wanted => {
+    const { index } = entry;
     const port = network.chip.ports.findIndex(({ drawnName }) => drawnName === entry.by);
     if (port < 0) refuseTarget(sheet, index, `by: the drawing has no port ${quote(entry.by)}`);
     const observed = observedOf(network, sheet, entry, index);
@@ -66,7 +69,7 @@ export function readTargets(network: Network): readonly Wanted[] {
 
 /** Stops at a target, with its line: `culture.run.yaml:31: targets[0]: …`. */
 export function refuseTarget(sheet: RunSheet, index: number, what: string): never {
-  throw new InputError(`${sheet.file}:${sheet.targets[index].line}`, `targets[${index}]: ${what}`);
+  return refuse(sheet, ['targets', index], `targets[${index}]: ${what}`);
 }
 
 /** NaN where it can't be known. */
@@ -136,7 +139,7 @@ export function targetText({ index, entry, name }: Pick<Wanted, 'index' | 'entry
 
 function refuseSharedPorts(sheet: RunSheet): void {
   const first = new Map<string, number>();
-  for (const [index, { by }] of sheet.targets.entries()) {
+  for (const { index, by } of sheet.targets) {
     const before = first.get(by);
     if (before !== undefined) {
       refuseTarget(
@@ -202,12 +205,11 @@ function reachOf(network: Network, sheet: RunSheet, { name, reach }: TargetEntry
 function nodeOf(network: Network, sheet: RunSheet, name: string, index: number): number {
   const port = network.chip.ports.findIndex(({ drawnName }) => drawnName === name);
   if (port >= 0) return network.portNode[port];
-  const names: string[] = [];
-  for (let node = 0; node < network.nodeCount; node++) {
-    const nodeName = network.nodeName(node);
-    if (nodeName === name) return node;
-    names.push(nodeName);
-  }
+  const found = findNodes(network, name);
+  if (found.length === 1) return found[0];
+  if (found.length > 1)
+    refuseSeveral(sheet, ['targets', index, 'node'], name, 'node', found.map(network.nodeName));
+  const names = Array.from({ length: network.nodeCount }, (_, node) => network.nodeName(node));
   const near = nearest(name, names);
   return refuseTarget(
     sheet,

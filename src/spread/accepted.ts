@@ -1,5 +1,7 @@
+import { acceptedName, madeUpNames } from '../chip/accept.ts';
 import type { Chip } from '../chip/types.ts';
 import { UNACCEPTABLE_RULES } from '../runsheet/measures.ts';
+import { isPattern } from '../runsheet/names.ts';
 
 /** What must be kept; null where nothing is asked. */
 export interface KeptLimits {
@@ -7,13 +9,15 @@ export interface KeptLimits {
   readonly max: number | null;
 }
 
+const NO_NAMES: ReadonlySet<string> = new Set();
+
 /**
  * Limits of a rule at these names, moved out as far as the run sheet's `accept` takes it on; an entry without `up_to` lifts them.
  * So a chip whose verdict is ready is judged by the same limits in every draw.
  * @param unit SI unit of the limits, as findings write it
  */
 export function acceptedLimits(
-  { accept }: Pick<Chip, 'accept'>,
+  chip: Pick<Chip, 'accept' | 'channels' | 'ports'>,
   rule: string,
   names: readonly string[],
   unit: string,
@@ -22,8 +26,10 @@ export function acceptedLimits(
 ): KeptLimits {
   let [low, high] = [min, max];
   if (UNACCEPTABLE_RULES.has(rule)) return { min: low, max: high };
-  for (const entry of accept) {
-    if (entry.rule !== rule || !names.includes(entry.at)) continue;
+  const entries = chip.accept.filter((entry) => entry.rule === rule);
+  const madeUp = entries.some(({ at }) => isPattern(at)) ? madeUpNames(chip) : NO_NAMES;
+  for (const entry of entries) {
+    if (acceptedName(entry.at, names, madeUp) === null) continue;
     if (entry.upTo === null) return { min: null, max: null };
     if (entry.upToUnit !== undefined && entry.upToUnit !== unit) continue;
     // the value lies below a least or above a most; one entry can move only the side it lies beyond

@@ -1,6 +1,7 @@
 import { isAbove } from '../findings/rule.ts';
 import { reynoldsNumber } from '../physics/reynolds.ts';
 import { acceptedLimits } from './accepted.ts';
+import { evennessOf } from './evenness.ts';
 import type { ChipState, SpreadModel } from './model.ts';
 import { flowingIn, isKept, type Output } from './outputs.ts';
 
@@ -32,11 +33,12 @@ export function makeJudge(model: SpreadModel, outputs: readonly Output[], nomina
       .map((i) => `${outputs[i].quantity.replaceAll('_', ' ')} of ${outputs[i].name}`);
   const failures = new Int32Array(outputs.length);
   const isLaminar = laminarityOf(model);
+  const evenness = evennessOf(model);
   let turbulent = 0;
   return {
     limited: judged,
     failures,
-    unknownWindows: named(true),
+    unknownWindows: [...named(true), ...evenness.unknown.map((key) => `evenness of ${key}`)],
     unknownLimits: named(false),
     turbulent: () => turbulent,
     isGood: (values, state) => {
@@ -48,6 +50,7 @@ export function makeJudge(model: SpreadModel, outputs: readonly Output[], nomina
         failures[i]++;
         good = false;
       }
+      if (!evenness.isKept(state)) good = false;
       if (isLaminar(state)) return good;
       turbulent++;
       return false;

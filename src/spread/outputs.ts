@@ -1,7 +1,9 @@
+import { refuseSeveral } from '../chip/targets.ts';
 import type { Chip } from '../chip/types.ts';
 import { InputError } from '../errors.ts';
 import { NEAR_VACUUM_PA } from '../findings/pressure.ts';
 import { isAbove, isBelow } from '../findings/rule.ts';
+import { findNodes } from '../network/find-node.ts';
 import type { Network } from '../network/types.ts';
 import { floorShareInside, gradientOf, type ShearRange, sideShareInside } from '../physics/duct.ts';
 import { nearest } from '../runsheet/nearest.ts';
@@ -388,7 +390,7 @@ function targetOutputs(network: Network, nominal: FlowState): Output[] {
           {
             ...PLAIN,
             on: 'node',
-            name: target.name,
+            name: network.nodeName(node),
             quantity: 'pressure',
             unit: 'Pa',
             isTarget: true,
@@ -445,8 +447,11 @@ function targetReaches(network: Network, target: TargetEntry): number[] {
 }
 
 function nodeOf(network: Network, target: TargetEntry): number {
-  for (let node = 0; node < network.nodeCount; node++)
-    if (network.nodeName(node) === target.name) return node;
+  const found = findNodes(network, target.name);
+  if (found.length === 1) return found[0];
+  const { sheet } = network.chip;
+  if (sheet !== null && found.length > 1)
+    refuseSeveral(sheet, ['targets', target.index, 'node'], target.name, 'node', found.map(network.nodeName));
   const names = Array.from({ length: network.nodeCount }, (_, node) => network.nodeName(node));
   return refuseTarget(network, target, 'node', target.name, names);
 }

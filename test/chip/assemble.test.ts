@@ -4,7 +4,7 @@ import { InputError } from '../../src/errors.ts';
 import { waterViscosity } from '../../src/physics/fluid.ts';
 import { parseRunSheet } from '../../src/runsheet/parse.ts';
 import { FULL_SHEET } from '../runsheet/full-sheet.ts';
-import { chipOf, circle, type Draft, ignored, layout, line, rectangle, stroke } from './drawing.ts';
+import { chipOf, circle, type Draft, filled, ignored, layout, line, rectangle, stroke } from './drawing.ts';
 
 const culture: readonly Draft[] = [
   stroke('chip-edge', rectangle(0, 0, 76, 26), { width: 0.1 }),
@@ -12,8 +12,11 @@ const culture: readonly Draft[] = [
   stroke(null, [5, 5, 10, 5], { groups: ['Drawing', 'upper'] }),
   stroke('valve', [5, 7, 10, 7], { groups: ['Control'] }),
   stroke('dim-3', [5, 9, 10, 9]),
-  ...['feed', 'dose', 'vent', 'waste', 'drain', 'spare'].map((name, i) =>
-    circle(name, 5 + 10 * i, 20, 1, { groups: ['holes'] }),
+  ...['branch-1', 'mixer'].map((name, i) => stroke(name, [65, 3 + 2 * i, 70, 3 + 2 * i])),
+  filled('chamber', rectangle(65, 8, 4, 4)),
+  circle(null, 66, 10, 0.5, { groups: ['posts', 'holes'] }),
+  ...['feed', 'dose', 'vent', 'waste', 'drain', 'spare', 'carrier', 'out-3'].map((name, i) =>
+    circle(name, 5 + 8 * i, 22, 1, { groups: ['holes'] }),
   ),
   circle('screw', 70, 20, 1.5),
   ignored(null, 'text'),
@@ -38,6 +41,7 @@ describe('assembleChip', () => {
         'named under ignore': 2,
         'in an ignored layer': 1,
         'circle outside the ports layer': 1,
+        'chamber or pillar': 2,
         text: 1,
       },
     });
@@ -45,6 +49,7 @@ describe('assembleChip', () => {
     expect(chip.layers).toEqual([
       { name: ' Lanes ', plane: 0, depthM: 120e-6, depthOrigin: 'run sheet', profile: 'rectangle' },
       { name: 'upper', plane: 1, depthM: 80e-6, depthOrigin: 'run sheet', profile: 'rectangle' },
+      { name: '', plane: 0, depthM: 50e-6, depthOrigin: 'default', profile: 'rectangle' },
     ]);
     expect(chip.channels.map(({ name, layer, plane }) => [name, layer, plane])).toEqual([
       ['lane-1', 0, 0],
@@ -52,6 +57,8 @@ describe('assembleChip', () => {
       ['lane-3', 0, 0],
       ['lane-4', 0, 0],
       ['channel-5', 1, 1],
+      ['branch-1', 2, 0],
+      ['mixer', 2, 0],
     ]);
     expect(chip.channels[0]!.settings!.wallShear).toEqual({ min: 0.05, max: 0.5, over: 0.8 });
     expect(chip.channels[4]!.settings).toBeNull();
@@ -62,8 +69,10 @@ describe('assembleChip', () => {
       ['waste', 'pressure'],
       ['drain', 'open'],
       ['spare', 'sealed'],
+      ['carrier', 'flow'],
+      ['out-3', 'unset'],
     ]);
-    expect(chip.ports[3]).toMatchObject({ expect: 'out', xMm: 35, yMm: 20, radiusMm: 1 });
+    expect(chip.ports[3]).toMatchObject({ expect: 'out', xMm: 29, yMm: 22, radiusMm: 1 });
     expect(chip.fluid).toMatchObject({
       name: 'water',
       temperatureK: 310.15,
@@ -86,6 +95,8 @@ describe('assembleChip', () => {
     expect(chipOf(drafts).joints).toBe('resolved');
     expect(chipOf(drafts, 'joints: resolved').joints).toBe('resolved');
     expect(chipOf(drafts, 'joints: centreline').joints).toBe('centreline');
+    // not computed yet, and said so
+    expect(chipOf(drafts, 'joints: computed').joints).toBe('resolved');
   });
 
   it('takes a case like a sheet', () => {

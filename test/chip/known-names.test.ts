@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { chipOf, circle, type Draft, ignored, stroke } from './drawing.ts';
+import { chipOf, circle, type Draft, filled, ignored, rectangle, stroke } from './drawing.ts';
 
 const drafts: readonly Draft[] = [
   stroke('lane-1', [0, 0, 10, 0], { groups: ['Lanes'] }),
@@ -73,6 +73,36 @@ describe('a name that the drawing lacks', () => {
       'pump_limits: { fed: { max_flow: 1 mL/min } }',
       '2: pump_limits.fed: the drawing has no port "fed"; did you mean "feed"?',
     ],
+    ['ports: { "out-*": open }', '2: ports.out-*: no port matches "out-*"; its ports are "feed", "waste"'],
+    [
+      'ports: { feed: open, "fe*": open }',
+      '2: ports.fe*: every port that it matches has an entry that goes before it, so it says nothing; take it out, or name the ports in full',
+    ],
+    [
+      'ports:\n  "*e*": open\n  "f*d": open',
+      '4: ports: "*e*" and "f*d" both match port "feed" and are equally long; give the port an entry of its own',
+    ],
+    [
+      'targets: [{ port: "*e*", flow: 1 uL/min, by: feed }]',
+      '2: targets[0].port: "*e*" matches 2 ports, "feed", "waste"; a target is on one: name it in full',
+    ],
+    [
+      'targets: [{ port: "x*", flow: 1 uL/min, by: feed }]',
+      '2: targets[0].port: no port matches "x*"; its ports are "feed", "waste"',
+    ],
+    [
+      'targets: [{ channel: "l*ne-9", flow: 1 uL/min, by: feed }]',
+      '2: targets[0].channel: no channel matches "l*ne-9"; did you mean "lane-1"?',
+    ],
+    ['fields: [lane-3]', '2: fields[0]: the drawing has no shape "lane-3"; did you mean "lane-1"?'],
+    ['fields: [label]', '2: fields[0]: the drawing has no shape "label"; its shapes are "lane-1", "feed"'],
+    ['pillars: [Lane]', '2: pillars[0]: the drawing has no layer "Lane"; did you mean "Lanes"?'],
+    ['switch: { from: [fed] }', '2: switch.from[0]: the drawing has no port "fed"; did you mean "feed"?'],
+    ['switch: { reach: "lan-*" }', '2: switch.reach: no channel matches "lan-*"; did you mean "lane-1"?'],
+    [
+      'solutes: { x: { diffusion: 1 m^2/s } }\ntargets: [{ port: wast, concentration: { x: 1 }, by: feed }]',
+      '3: targets[0].port: the drawing has no port "wast"; did you mean "waste"?',
+    ],
     [
       'tolerances: { depth: { lane: 5 % } }',
       '2: tolerances.depth.lane: the drawing has no layer "lane"; did you mean "Lanes"?',
@@ -100,6 +130,25 @@ describe('a name that the drawing lacks', () => {
     const sheet =
       'depth: 50 um\nignore: [nothing, "dim-*"]\ntargets: [{ node: junction-1, pressure: 1 kPa, by: feed }]';
     expect(chipOf(drafts, sheet).channels.length).toBe(3);
+  });
+
+  it('may be a pattern that matches exactly one, which then stands for it', () => {
+    const chip = chipOf(
+      drafts,
+      'depth: 50 um\nports: { "f*": open, "*": sealed }\ntargets:\n  - { channel: "l*", flow: 1 uL/min, by: feed }\n  - { port: "w*e", pressure: 1 kPa, by: waste }',
+    );
+    expect(chip.sheet!.targets.map(({ name }) => name)).toEqual(['lane-1', 'waste']);
+    // a shape without a name is nobody's
+    expect(chip.ports.map(({ condition }) => condition.kind)).toEqual(['open', 'sealed', 'unset']);
+  });
+
+  it('may stand under channels for a chamber, and a switch may ask for a reach of several', () => {
+    const shapes = [...drafts, filled('chamber', rectangle(30, 0, 4, 4))];
+    const sheet =
+      'depth: 50 um\nfields: [chamber]\nchannels: { chamber: { wall_shear: { max: 1 Pa } } }\nswitch: { reach: "lane-1:2" }';
+    const chip = chipOf(shapes, sheet);
+    expect(chip.faults).toEqual([]);
+    expect(chip.ignored).toMatchObject({ 'chamber or pillar': 1 });
   });
 
   it('of a drawing without ports is answered so', () => {

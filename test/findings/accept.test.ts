@@ -1,3 +1,4 @@
+import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { acceptFindings } from '../../src/findings/accept.ts';
 import { toFinding } from '../../src/findings/rule.ts';
@@ -86,6 +87,52 @@ describe('acceptFindings', () => {
     ).not.toBeNull();
     const unknown = finding('thin-wall', { value: null, limit: 40e-6, unit: 'm' });
     expect(judged(unknown, entry({}))[0].message).toContain('there is no value to compare');
+  });
+
+  it('has for a ceiling the slack that limits have', () => {
+    const wall = (value: number) => finding('thin-wall', { value, limit: 40e-6, unit: 'm' });
+    expect(judged(wall(35e-6 * (1 - 0.9e-6)), entry({}))[0].accepted).not.toBeNull();
+    expect(judged(wall(35e-6 * (1 - 1.1e-6)), entry({}))[0].accepted).toBeNull();
+  });
+
+  it('takes on whatever a pattern matches, each up to its ceiling, and says what was matched', () => {
+    const wall = finding('thin-wall', { value: 36e-6, limit: 40e-6, unit: 'm' });
+    const [taken] = judged(wall, entry({ at: 'lane-*' }));
+    expect(taken.accepted?.at).toBe('lane-*');
+    expect(taken.message).toBe('something is wrong; accepted as lane-2, which lane-* matches');
+    const [named] = judged(wall, entry({ at: 'lane-*', upTo: 38e-6 }), entry({ at: 'lane-1' }));
+    expect(named.accepted?.at).toBe('lane-1');
+    expect(named.message).toBe('something is wrong');
+    expect(judged(wall, entry({ at: 'l*-3' }))).toHaveLength(2);
+  });
+
+  it('has no pattern mean a name that the drawing does not have, nor a reach of such', () => {
+    const at = (names: readonly string[]) => {
+      const one = { ...finding('open-end', null), names };
+      const entries = [entry({ rule: 'open-end', at: 'channel-*', upTo: null })];
+      return acceptFindings([one], [], entries, RULES, SHOW, new Set(['channel-3']))[0].accepted;
+    };
+    expect(at(['channel-3', 'channel-3:2'])).toBeNull();
+    expect(at(['channel-4'])).not.toBeNull();
+    expect(at(['channel-4:1'])).not.toBeNull();
+  });
+
+  it('tries every entry that matches, as trying them one by one does', () => {
+    const words = fc.string({ unit: fc.constantFrom('a', 'b'), minLength: 1, maxLength: 4 });
+    const patterns = fc.string({ unit: fc.constantFrom('a', 'b', '*'), minLength: 1, maxLength: 4 });
+    const entries = fc.array(fc.tuple(patterns, fc.integer({ min: 20, max: 45 })), { maxLength: 5 });
+    fc.assert(
+      fc.property(fc.array(words, { minLength: 1, maxLength: 3 }), entries, (names, given) => {
+        const wall = { ...finding('thin-wall', { value: 32e-6, limit: 40e-6, unit: 'm' }), names };
+        const [one] = judged(wall, ...given.map(([at, um], i) => entry({ at, upTo: um * 1e-6, line: i })));
+        const covers = given.some(
+          ([at, um]) =>
+            um <= 32 && names.some((name) => new RegExp(`^${at.replaceAll('*', '.*')}$`).test(name)),
+        );
+        expect(one.accepted !== null).toBe(covers);
+      }),
+      { seed: 5, numRuns: 2000 },
+    );
   });
 
   it('goes by the entry that covers the finding when several name it', () => {

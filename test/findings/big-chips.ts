@@ -53,6 +53,9 @@ function driven(chip: Chip): Chip {
         residenceTime: { min: 1e-6, max: null },
         flow: { min: null, max: 1e-6 },
         walls: 'all',
+        even: null,
+        concentration: null,
+        mixing: null,
       },
     })),
     ports: chip.ports.map((port, p) => ({

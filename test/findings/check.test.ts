@@ -96,12 +96,12 @@ describe('the rules', () => {
 });
 
 describe('a limit', () => {
-  it('is passed by more than a billionth of itself only, in the drawing’s favour', () => {
-    expect(isBelow(20e-6 * (1 - 0.9e-9), 20e-6)).toBe(false);
-    expect(isBelow(20e-6 * (1 - 1.1e-9), 20e-6)).toBe(true);
-    expect(isAbove(10 * (1 + 0.9e-9), 10)).toBe(false);
-    expect(isAbove(10 * (1 + 1.1e-9), 10)).toBe(true);
-    expect(isBelow(-30e3 * (1 + 0.9e-9), -30e3)).toBe(false);
-    expect(isBelow(-30e3 * (1 + 1.1e-9), -30e3)).toBe(true);
+  it('is passed by more than a millionth of itself only, in the drawing’s favour', () => {
+    expect(isBelow(20e-6 * (1 - 0.9e-6), 20e-6)).toBe(false);
+    expect(isBelow(20e-6 * (1 - 1.1e-6), 20e-6)).toBe(true);
+    expect(isAbove(10 * (1 + 0.9e-6), 10)).toBe(false);
+    expect(isAbove(10 * (1 + 1.1e-6), 10)).toBe(true);
+    expect(isBelow(-30e3 * (1 + 0.9e-6), -30e3)).toBe(false);
+    expect(isBelow(-30e3 * (1 + 1.1e-6), -30e3)).toBe(true);
   });
 });

@@ -64,3 +64,33 @@ describe('a branch that was carried on', () => {
     }
   });
 });
+
+describe('a stroke that is shorter than the strip it starts in', () => {
+  for (const off of [0, 1e-9, 3e-4, -3e-4, 9e-4]) {
+    it(`is carried on once, ${off} mm beside the centreline`, () => {
+      const lengths = ducts([
+        { name: 'short', widthMm: 0.8, depthMm: 0.05, lines: [[16, 10, 15.795, 10]] },
+        { name: 'rest', widthMm: 0.8, depthMm: 0.05, lines: [[15.795, 10, 8, 10]] },
+        { name: 'main', widthMm: 0.8, lines: [[16 + off, 13.5, 16 + off, 4.5]] },
+      ]);
+      expect(Object.keys(lengths)).toEqual(['short', 'rest', 'main:1', 'main:2']);
+      // 0.4 mm of it lie in the main, as wide and twice as deep.
+      expect(lengths.short + lengths.rest).toBeCloseTo(7.6 + 0.4 / 8, 2);
+    });
+  }
+});
+
+describe('channels of two planes at one port', () => {
+  it('do not trim each other, however the first is drawn to the rim', () => {
+    for (const radiusMm of [0.5297, 0.53, 0.52981]) {
+      const lengths = ducts(
+        [
+          { name: 'lane', widthMm: 0.1, depthMm: 0.12, lines: [[22, 15.4702, 22, 12.9]] },
+          { name: 'control', widthMm: 0.2, plane: 1, lines: [[22, 10.2, 22, 16]] },
+        ],
+        [{ name: 'a', x: 22, y: 16, radiusMm }],
+      );
+      expect(lengths.control).toBeCloseTo(5.8 - radiusMm, 9);
+    }
+  });
+});

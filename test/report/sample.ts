@@ -167,6 +167,9 @@ const WINDOW: ChannelEntry = {
   residenceTime: null,
   flow: null,
   walls: 'floor',
+  even: null,
+  concentration: null,
+  mixing: null,
 };
 
 function sampleChip(names: SampleNames, { show = {}, bare = false }: SampleOptions): Chip {
@@ -306,7 +309,13 @@ function sampleSheet(names: SampleNames, show: ShowUnits): RunSheet {
     layers: {},
     ports: {},
     channels: { 'lane-*': WINDOW },
+    solutes: {},
+    junctions: null,
+    switch: null,
+    fields: [],
+    pillars: [],
     targets: [],
+    concentrationTargets: [],
     pumpLimits: {},
     limits: {
       minWidthM: 20e-6,

@@ -37,8 +37,20 @@ describe('cases', () => {
       expect: 'in',
       tubing: [{ lengthM: 1 }],
     });
+    expect(caseOf(`${base}cases: { a: { ports: { p: open } } }`).ports.p).toMatchObject({
+      condition: { kind: 'open' },
+      expect: 'in',
+      tubing: [{ lengthM: 1 }],
+    });
+    // what is sealed is neither an inlet nor an outlet
     expect(caseOf(`${base}cases: { a: { ports: { p: sealed } } }`).ports.p).toMatchObject({
       condition: { kind: 'sealed' },
+      expect: null,
+      tubing: [{ lengthM: 1 }],
+    });
+    expect(caseOf(`${base}cases: { a: { ports: { p: { tubing: none } } } }`).ports.p).toMatchObject({
+      condition: { kind: 'pressure', pressurePa: 1000 },
+      expect: 'in',
       tubing: [],
     });
     expect(caseOf(`${base}cases: { a: { ports: { p: { tubing: { bore: 2 mm } } } } }`).ports.p).toMatchObject(
@@ -47,6 +59,52 @@ describe('cases', () => {
         tubing: [{ boreM: 2e-3, lengthM: 1 }],
       },
     );
+  });
+
+  it('give a condition to a port that the sheet writes in one word, and tubing to its condition', () => {
+    const base = 'ports: { p: open }\n';
+    expect(caseOf(`${base}cases: { a: { ports: { p: { head: 2 mm } } } }`).ports.p).toMatchObject({
+      condition: { kind: 'head' },
+    });
+    expect(
+      caseOf(`${base}cases: { a: { ports: { p: { tubing: { bore: 2 mm, length: 1 m } } } } }`).ports.p,
+    ).toMatchObject({ condition: { kind: 'open' }, tubing: [{ boreM: 2e-3 }] });
+  });
+
+  it('keep what a port carries, as they keep its tubing', () => {
+    const base =
+      'solutes: { drug: { diffusion: 5e-10 m^2/s } }\nports: { p: { flow: 1 uL/min, concentration: { drug: 3 } } }\n';
+    expect(caseOf(`${base}cases: { a: { ports: { p: open } } }`).ports.p!.concentration).toEqual({ drug: 3 });
+  });
+
+  it('keep the tubing that a pattern of the sheet gives, under a name or a narrower pattern', () => {
+    const base =
+      'ports: { "out-*": { pressure: 0 Pa, tubing: { bore: 1 mm, length: 1 m } }, "o*": sealed }\n';
+    for (const [key, name] of [
+      ['out-1', 'out-1'],
+      ['"out-1*"', 'out-1*'],
+    ] as const) {
+      for (const [change, kind] of [
+        ['open', 'open'],
+        ['{ head: 1 mm }', 'head'],
+      ] as const) {
+        const { ports } = caseOf(`${base}cases: { a: { ports: { ${key}: ${change} } } }`);
+        expect(ports[name]).toMatchObject({ condition: { kind }, tubing: [{ lengthM: 1 }] });
+        expect(ports['out-*']).toMatchObject({ condition: { kind: 'pressure' } });
+      }
+    }
+  });
+
+  it('stop at a pattern that would leave a port as the sheet has it', () => {
+    const message =
+      'c.run.yaml:2: cases.a.ports.out-*: does not change "out-12", which the sheet gives an entry of its own; write in the case the names that the sheet has';
+    expect(() => parse('ports: { out-12: open }\ncases: { a: { ports: { "out-*": sealed } } }')).toThrow(
+      message,
+    );
+    expect(() => parse('ports: { "o*": open }\ncases: { a: { ports: { "out-*": sealed } } }')).not.toThrow();
+    expect(() =>
+      parse('ports: { out-12: open, "out-*": open }\ncases: { a: { ports: { "out-*": sealed } } }'),
+    ).not.toThrow();
   });
 
   it('replace one kind of fluid by another', () => {

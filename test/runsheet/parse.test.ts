@@ -1,7 +1,9 @@
 import { describe, expect, it } from 'vitest';
+import { parseDocument } from 'yaml';
 import { InputError } from '../../src/errors.ts';
 import { parseRunSheet } from '../../src/runsheet/parse.ts';
-import { FULL_SHEET } from './full-sheet.ts';
+import { SHEET_KEYS } from '../../src/runsheet/schema.ts';
+import { CONTRACT_SHEET, FULL_SHEET } from './full-sheet.ts';
 
 const parse = (text: string) => parseRunSheet(text, 'c.run.yaml');
 
@@ -193,6 +195,58 @@ describe('parseRunSheet', () => {
     ]);
   });
 
+  it('reads what is computed only later: what fluids carry, how they meet, switching, chambers and pillars', () => {
+    expect(sheet.solutes.drug).toEqual({ diffusionM2s: 5e-10, unit: 'uM' });
+    expect(sheet.ports.carrier).toMatchObject({ concentration: { drug: 10 }, tubing: [] });
+    expect(sheet.ports.feed!.concentration).toBeNull();
+    expect(sheet.channels.mixer).toMatchObject({
+      concentration: { drug: { min: 2, max: 4, over: 0.95 } },
+      mixing: { drug: 0.9 },
+      even: null,
+    });
+    expect(sheet.channels['branch-*']!.even).toBe(0.05);
+    expect(sheet.junctions).toBe('laminar');
+    expect(sheet.switch).toMatchObject({ from: ['feed'], reach: 'lane-*', to: 0.95, withinS: 120 });
+    expect([sheet.fields, sheet.pillars]).toEqual([['chamber'], ['posts']]);
+    expect(sheet.concentrationTargets).toMatchObject([
+      {
+        index: 2,
+        on: 'port',
+        name: 'out-3',
+        quantity: 'concentration',
+        solute: 'drug',
+        value: 3,
+        by: 'dose',
+      },
+    ]);
+    expect(sheet.targets.map(({ index }) => index)).toEqual([0, 1]);
+    expect(parse('joints: computed').joints).toBe('computed');
+  });
+
+  it('reads the example of the contract word for word', () => {
+    expect(() => parse(CONTRACT_SHEET)).not.toThrow();
+    expect(parse(CONTRACT_SHEET).cases.map(({ name }) => name)).toEqual(['seed', 'culture']);
+  });
+
+  it('reads a full sheet without any one of its parts, and without any part of these', () => {
+    const whole = parseDocument(FULL_SHEET, { schema: 'failsafe' });
+    const plain: Readonly<Record<string, unknown>> = whole.toJS();
+    expect(Object.keys(plain).sort()).toEqual([...SHEET_KEYS].sort());
+    const parts = Object.entries(plain).flatMap(([key, value]): (readonly (string | number)[])[] => {
+      // a size has two sides, and what is said of a solute needs the solute
+      if (key === 'solutes' || typeof value !== 'object' || value === null)
+        return key === 'solutes' ? [] : [[key]];
+      const inner = key === 'size' ? [] : Object.keys(value);
+      return [[key], ...inner.map((name) => [key, Array.isArray(value) ? Number(name) : name])];
+    });
+    expect(parts.length).toBeGreaterThan(60);
+    for (const path of parts) {
+      const less = whole.clone();
+      less.deleteIn(path);
+      expect(() => parse(String(less)), path.join('.')).not.toThrow();
+    }
+  });
+
   it('reads tolerances as shares, values, hard limits, and by name with a default', () => {
     const text = `tolerances:
   depth: { lanes: 5 %, upper: { limit: 3 um }, default: 4 % }
@@ -309,7 +363,7 @@ const WRONG: readonly (readonly [string, string])[] = [
   ],
   [
     'channels: { a: { wall_shear: { over: 80 % } } }',
-    '1: channels.a.wall_shear: needs min, max or both; write for example { min: 1 s, max: 60 s }',
+    '1: channels.a.wall_shear: needs min, max or both; write for example { min: 0.05 Pa, max: 0.5 Pa }',
   ],
   [
     'channels: { a: { wall_shear: { min: 1 Pa, over: 120 % } } }',
@@ -336,7 +390,10 @@ const WRONG: readonly (readonly [string, string])[] = [
     'fluid: { glycerol: 130 % by mass }',
     '1: fluid.glycerol: "130 % by mass" is not between 0 % and 100 %; write for example "30 % by mass"',
   ],
-  ['joints: resolvd', '1: joints: "resolvd" is not one of resolved, centreline; did you mean "resolved"?'],
+  [
+    'joints: resolvd',
+    '1: joints: "resolvd" is not one of resolved, centreline, computed; did you mean "resolved"?',
+  ],
   [
     'process: etched glas',
     '1: process: "etched glas" is not one of cast elastomer, etched glass, etched silicon, milled thermoplastic, moulded thermoplastic; did you mean "etched glass"?',
@@ -351,11 +408,11 @@ const WRONG: readonly (readonly [string, string])[] = [
   ],
   [
     'targets: [{ channel: a, by: p }]',
-    '1: targets[0]: has no quantity; a target on a channel has exactly one of flow, wall_shear, velocity, residence_time; write for example { channel: lane-1, wall_shear: 0.3 Pa, by: feed }',
+    '1: targets[0]: has no quantity; a target on a channel has exactly one of flow, wall_shear, velocity, residence_time, concentration; write for example { channel: lane-1, wall_shear: 0.3 Pa, by: feed }',
   ],
   [
     'targets:\n  - channel: a\n    pressure: 1 kPa\n    by: p',
-    '3: targets[0].pressure: a target on a channel can be flow, wall_shear, velocity, residence_time',
+    '3: targets[0].pressure: a target on a channel can be flow, wall_shear, velocity, residence_time, concentration',
   ],
   [
     'targets: [{ channel: a, flow: 1 uL/min, at: peak, by: p }]',
@@ -370,8 +427,84 @@ const WRONG: readonly (readonly [string, string])[] = [
     '1: targets[0]: needs the key by; write for example { channel: lane-1, wall_shear: 0.3 Pa, by: feed }',
   ],
   [
-    'targets: [{ channel: "a*", flow: 1 uL/min, by: p }]',
-    '1: targets[0].channel: "a*" is a pattern; a target is one channel, named in full',
+    'targets: [{ channel: "a*", flow: 1 uL/min, by: "p*" }]',
+    '1: targets[0].by: "p*" is a pattern; a target is met by one port, named in full',
+  ],
+  [
+    'targets: [{ port: a, concentration: { drug: 3, dye: 2 }, by: p }]',
+    '1: targets[0].concentration: names 2 solutes; a target is on one; write for example { drug: 3 }',
+  ],
+  [
+    'targets: [{ port: a, concentration: {}, by: p }]',
+    '1: targets[0].concentration: names no solute; a target is on one; write for example { drug: 3 }',
+  ],
+  [
+    'targets: [{ node: a, concentration: { drug: 3 }, by: p }]',
+    '1: targets[0].concentration: a target on a node can be pressure',
+  ],
+  [
+    'targets: [{ port: a, concentration: { drug: 3 }, by: p }]',
+    '1: targets[0].concentration.drug: "drug" is not among the solutes; write for example solutes: { drug: { diffusion: 5e-10 m^2/s, unit: uM } }',
+  ],
+  [
+    'solutes: { drug: { diffusion: 5e-10 m^2/s } }\nports: { a: { concentration: { drgu: 3 } } }',
+    '2: ports.a.concentration.drgu: "drgu" is not among the solutes; did you mean "drug"?',
+  ],
+  [
+    'solutes: { drug: { diffusion: 5e-10 m^2/s } }\nchannels: { a: { mixing: { x: { min: 90 % } } } }',
+    '2: channels.a.mixing.x: "x" is not among the solutes; known here: "drug"',
+  ],
+  [
+    'ports: { a: { concentration: { drug: 3 uM } } }',
+    '1: ports.a.concentration.drug: "3 uM" has a unit; a concentration is a bare number, its unit stands under solutes; write for example "3"',
+  ],
+  [
+    'ports: { a: { concentration: { drug: -3 } } }',
+    '1: ports.a.concentration.drug: "-3" is below 0; a concentration must be not below 0; write for example "10"',
+  ],
+  [
+    'ports: { a: { concentration: {} } }',
+    '1: ports.a.concentration: names no solute; write for example { drug: 10 }',
+  ],
+  [
+    'channels: { a: { concentration: { drug: { over: 95 % } } } }',
+    '1: channels.a.concentration.drug: needs min, max or both; write for example { min: 2, max: 4, over: 95 % }',
+  ],
+  [
+    'channels: { a: { mixing: { drug: 90 % } } }',
+    '1: channels.a.mixing.drug: is one text; write for example { min: 90 % }',
+  ],
+  [
+    'channels: { a: { even: 0 % } }',
+    '1: channels.a.even: "0 %" is not above 0 % and at most 100 %; write for example "5 %"',
+  ],
+  ['channels: { a: { even: 5 } }', '1: channels.a.even: "5" has no unit; write for example "5 %"'],
+  [
+    'solutes: { drug: { unit: uM } }',
+    '1: solutes.drug: needs the key diffusion; write for example { diffusion: 5e-10 m^2/s, unit: uM }',
+  ],
+  [
+    'solutes: { drug: { diffusion: 5e-10 } }',
+    '1: solutes.drug.diffusion: "5e-10" has no unit; write for example "5e-10 m^2/s"',
+  ],
+  ['junctions: mixd', '1: junctions: "mixd" is not one of laminar, mixed; did you mean "mixed"?'],
+  ['switch: { to: 120 % }', '1: switch.to: "120 %" is not above 0 % and at most 100 %'],
+  ['switch: { within: 2 }', '1: switch.within: "2" has no unit; write for example "2 min"'],
+  ['switch: { form: [a] }', '1: switch.form: unknown key; did you mean "from"?'],
+  ['fields: chamber', '1: fields: is one text; write for example [chamber]'],
+  ['pillars: { posts: 1 }', '1: pillars: is a map of keys and values; write for example [posts]'],
+  ['ports: { a: { tubing: non } }', '1: ports.a.tubing: "non" is not one of none; did you mean "none"?'],
+  [
+    'accept: [{ rule: open-end, at: "*", because: b, by: c, on: 2026-01-01 }]',
+    '1: accept[0].at: "*" would take on whatever the rule finds anywhere; name what was looked at; write for example "lane-*"',
+  ],
+  [
+    'accept: [{ rule: open-end, at: " ** ", because: b, by: c, on: 2026-01-01 }]',
+    '1: accept[0].at: "**" would take on',
+  ],
+  [
+    'accept: [{ rule: not-computed, at: a, because: b, by: c, on: 2026-01-01 }]',
+    '1: accept[0].rule: "not-computed" can\'t be accepted',
   ],
   [
     'pump_limits: { feed: { max_pressure: 1 kPa, min_pressure: 2 kPa } }',

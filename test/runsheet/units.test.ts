@@ -61,6 +61,8 @@ const SPELLINGS: readonly (readonly [Quantity, number, readonly string[]])[] = [
   ['angle', Math.PI / 6, ['30 deg', '30°', '30 °']],
   ['share', 0.8, ['80 %', '80%']],
   ['ratio', 10, ['10', '1e1', '10.0']],
+  ['diffusion', 5e-10, ['5e-10 m^2/s', '5e-10 m2/s', '5e-10 m²/s', '5e-6 cm^2/s', '500 um^2/s', '500 µm²/s']],
+  ['concentration', 10, ['10', '1e1', '+10']],
 ];
 
 describe('parseQuantity', () => {
@@ -71,6 +73,22 @@ describe('parseQuantity', () => {
       });
     }
   }
+
+  it('reads every unit that the trade writes, as the contract lists them', () => {
+    const listed: readonly (readonly [Quantity, string])[] = [
+      ['length', 'um µm μm thou in'],
+      ['flow', 'uL/min µL/min μL/min ul/min uL/h uL/hr uL/s nL/s nL/min'],
+      ['pressure', 'mbar bar psi mmHg torr inH2O cmH2O mmH2O'],
+      ['viscosity', 'cP mPa_s mPa·s mPa*s mPa.s'],
+      ['wall_shear', 'dyn/cm^2 dyn/cm2 dyn/cm²'],
+      ['share', '%'],
+      ['temperature', 'degC °C'],
+      ['temperature_difference', 'degC °C'],
+    ];
+    for (const [quantity, units] of listed)
+      for (const unit of units.split(' '))
+        expect(parseQuantity(`2 ${unit.replace('_', ' ')}`, quantity), unit).toBeGreaterThan(0);
+  });
 
   it('gives the nearest double for factors that are an integer or one over an integer', () => {
     expect(parseQuantity('50 um', 'length')).toBe(5e-5);
@@ -196,6 +214,8 @@ describe('unitFactor and formatQuantity', () => {
       'angle',
       'share',
       'ratio',
+      'diffusion',
+      'concentration',
     ];
     for (const quantity of all)
       expect(parseQuantity(describeQuantity(quantity).example, quantity)).toBeGreaterThan(0);

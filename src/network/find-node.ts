@@ -1,0 +1,13 @@
+import { isPattern, matches } from '../runsheet/names.ts';
+import type { Network } from './types.ts';
+
+/** Nodes by the name shown: the one named in full, else all that a pattern matches. Cost: linear in nodes. */
+export function findNodes(network: Network, name: string): readonly number[] {
+  const found: number[] = [];
+  for (let node = 0; node < network.nodeCount; node++) {
+    const nodeName = network.nodeName(node);
+    if (nodeName === name) return [node];
+    if (isPattern(name) && matches(name, nodeName)) found.push(node);
+  }
+  return found;
+}

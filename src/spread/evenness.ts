@@ -1,0 +1,45 @@
+import { isAbove } from '../findings/rule.ts';
+import { membersOf } from '../findings/uneven.ts';
+import { acceptedLimits } from './accepted.ts';
+import type { ChipState, SpreadModel } from './model.ts';
+import { channelReaches } from './passages.ts';
+
+export interface Evenness {
+  /** Whether every group of channels that is to be even is so, as the rule uneven-flow judges it. */
+  readonly isKept: (state: ChipState) => boolean;
+  /** Keys of groups with a flow that can't be known. */
+  readonly unknown: readonly string[];
+}
+
+/** One group of the run sheet: the reaches of each of its channels, and how far a flow may lie off their mean. */
+interface Group {
+  readonly key: string;
+  readonly lanes: readonly (readonly number[])[];
+  readonly most: number;
+}
+
+export function evennessOf({ chip, network, nominal }: SpreadModel): Evenness {
+  const groups = Object.entries(chip.sheet?.channels ?? {}).flatMap(([key, { even }]): Group[] => {
+    if (even === null) return [];
+    const members = membersOf(chip, key);
+    const names = members.map((channel) => chip.channels[channel].name);
+    const { max } = acceptedLimits(chip, 'uneven-flow', names, '', null, even);
+    if (members.length < 2 || max === null) return [];
+    return [{ key, lanes: members.map((channel) => [...channelReaches(network, channel)]), most: max }];
+  });
+  const isKnown = ({ lanes }: Group): boolean =>
+    lanes.every(
+      (reaches) => reaches.length > 0 && reaches.every((reach) => !Number.isNaN(nominal.reachFlow[reach])),
+    );
+  const judged = groups.filter(isKnown);
+  return {
+    unknown: groups.filter((group) => !isKnown(group)).map(({ key }) => key),
+    isKept: ({ flow }) => judged.every((group) => isEven(group, flow.flow)),
+  };
+}
+
+function isEven({ lanes, most }: Group, flow: Float64Array): boolean {
+  const flows = lanes.map((reaches) => Math.max(...reaches.map((reach) => Math.abs(flow[reach]))));
+  const mean = flows.reduce((sum, value) => sum + value, 0) / flows.length;
+  return mean === 0 || flows.every((value) => !isAbove(Math.abs(value - mean) / mean, most));
+}
