@@ -282,6 +282,10 @@ function deviation(wanted: Answer, got: Answer, bound: LengthBound): Deviation {
   return { faults, worstLength, worstFlow };
 }
 
+/** Width and depth to 0.1 µm as one number: nearly equal ones are equal. */
+const sizeOf = ({ widthMm, depthMm }: DuctPart) =>
+  Math.round(widthMm * 1e4) * 1e5 + Math.round(depthMm * 1e4);
+
 const isNearly = (a: number, b: number) => Math.abs(a - b) <= 1e-6 * a;
 
 /** Which node of `got` each of `wanted` is: ports by name, others by place. */
@@ -305,7 +309,7 @@ function pairedNodes(wanted: Graph, got: Graph, faults: string[]): number[] {
   return pair;
 }
 
-/** Ducts between the same nodes in the same direction, those in parallel in order of resistance. */
+/** Ducts between the same nodes in the same direction, those in parallel in order of size and resistance. */
 function pairedDucts(
   wanted: Answer,
   got: Answer,
@@ -322,7 +326,11 @@ function pairedDucts(
       lists.set(key, [...(lists.get(key) ?? []), one]);
     });
     for (const list of lists.values()) {
-      list.sort((a, b) => seriesResistance(a.parts, 1) - seriesResistance(b.parts, 1));
+      list.sort((a, b) => {
+        const [x, y] = [a, b].map(({ parts }) => partSums(parts).map(sizeOf).join(' '));
+        if (x !== y) return x < y ? -1 : 1;
+        return seriesResistance(a.parts, 1) - seriesResistance(b.parts, 1);
+      });
     }
     return lists;
   };
@@ -351,9 +359,7 @@ function partSums(parts: readonly DuctPart[]): DuctPart[] {
     if (i < 0) sums.push(part);
     else sums[i] = { ...sums[i], lengthMm: sums[i].lengthMm + part.lengthMm };
   }
-  const size = ({ widthMm, depthMm }: DuctPart) =>
-    Math.round(widthMm * 1e4) * 1e5 + Math.round(depthMm * 1e4);
-  return sums.sort((a, b) => size(a) - size(b));
+  return sums.sort((a, b) => sizeOf(a) - sizeOf(b));
 }
 
 export const shown = (parts: readonly DuctPart[]) =>
