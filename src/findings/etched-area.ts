@@ -1,15 +1,18 @@
 import {
+  COARSE_SHARE,
   commonOutline,
   distanceToOutline,
   leastWidth,
   middleOfOutline,
   type Outline,
   pieceOutline,
+  type Rounds,
 } from '../geometry/outline.ts';
 import type { Pieces } from '../geometry/pieces.ts';
 import { isInPieceStrip } from '../geometry/strip.ts';
 import { closestPoints, type Line } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
+import { endMeets } from './end-meets.ts';
 import { portsNear } from './misses.ts';
 import { lineOf } from './painted.ts';
 import { channelPaths } from './paths.ts';
@@ -109,9 +112,8 @@ class Overlaps {
       // The strip of a piece lies within half a width of it, whatever its ends.
       if (pairDistance[k] > pieces.half[i] + pieces.half[j]) continue;
       if (isOneStretch(pieces, i, j) || this.meetWhereNearest(i, j) || this.meetAnywhere(i, j)) continue;
-      const common = commonOutline(pieceOutline(pieces, i, 0), pieceOutline(pieces, j, 0));
-      // Strips that only touch are no overlap: thin-wall's sides without a wall say it where they run along each other.
-      if (common.length === 0 || leastWidth(common).widthMm <= ROUNDING * (pieces.half[i] + pieces.half[j])) {
+      const common = overlapOf(pieces, i, j);
+      if (common === null) {
         this.open.set(k, null);
         continue;
       }
@@ -160,7 +162,7 @@ class Overlaps {
     for (const k of this.thirdsOf(i, j)) {
       if (!this.isJoined(i, k) || !this.isJoined(j, k)) continue;
       if (this.holdsCornerOf(k, common)) return true;
-      if (commonOutline(common, pieceOutline(this.pieces, k, this.slackMm)).length > 0) return true;
+      if (commonOutline(common, pieceOutline(this.pieces, k, this.slackMm, 'coarse')).length > 0) return true;
     }
     return false;
   }
@@ -289,11 +291,11 @@ class Overlaps {
 
   private isLeftOutOf(i: number, j: number): boolean {
     const { pieces, slackMm } = this;
-    const { firstArc, endJoinedTo } = this.context.network.trace;
+    const { firstArc } = this.context.network.trace;
     const c = pieces.centreline[i];
     if (firstArc[c + 1] > firstArc[c]) return false;
     return [2 * c, 2 * c + 1].some((end) => {
-      if (endJoinedTo[end] !== pieces.centreline[j]) return false;
+      if (!endMeets(this.context.network, end, pieces.centreline[j])) return false;
       const piece = end === 2 * c ? pieces.firstPiece[c] : pieces.firstPiece[c + 1] - 1;
       if (piece !== i) return false;
       const [x, y] = end === 2 * c ? [pieces.x1[i], pieces.y1[i]] : [pieces.x2[i], pieces.y2[i]];
@@ -322,6 +324,19 @@ class Overlaps {
     }
     return false;
   }
+}
+
+/** What the strips of two pieces have in common; null where they only touch, which thin-wall speaks of. */
+function overlapOf(pieces: Pieces, i: number, j: number): Outline | null {
+  const coarse = commonIn(pieces, i, j, 'coarse');
+  const halves = pieces.half[i] + pieces.half[j];
+  if (coarse.length > 0 && leastWidth(coarse).widthMm > 2 * COARSE_SHARE * halves) return coarse;
+  const fine = commonIn(pieces, i, j, 'fine');
+  return fine.length > 0 && leastWidth(fine).widthMm > ROUNDING * halves ? fine : null;
+}
+
+function commonIn(pieces: Pieces, i: number, j: number, rounds: Rounds): Outline {
+  return commonOutline(pieceOutline(pieces, i, 0, rounds), pieceOutline(pieces, j, 0, rounds));
 }
 
 /**
@@ -383,7 +398,8 @@ interface Faced extends Facing {
 
 function toFaced({ network }: FindingContext, overlap: Overlap): Faced {
   const { pieces } = network.trace.near;
-  const { i, j, common } = overlap;
+  const { i, j } = overlap;
+  const common = commonIn(pieces, i, j, 'fine');
   const { widthMm, nx, ny } = leastWidth(common);
   const { x, y } = middleOfOutline(common);
   const [from, to] = extentOn(pieces, i, common);

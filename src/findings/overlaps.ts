@@ -1,6 +1,7 @@
 import type { Pieces } from '../geometry/pieces.ts';
 import { closestPoints, type Line, stretchWithin } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
+import { endMeets } from './end-meets.ts';
 import { onlyGrows } from './growth.ts';
 import { lineOf } from './painted.ts';
 import { isAbove } from './rule.ts';
@@ -179,14 +180,9 @@ function toDoubleStroke(
   /** Positions on a of ends of either stroke that were carried on to the other: they meet in a node there. */
   function joinedEnds(): number[] {
     const slack = chip.joinWithinMm;
-    const { endJoinedTo, endBundle } = network.trace;
-    const meets = (end: number, other: number): boolean =>
-      endJoinedTo[end] === other ||
-      (endBundle[end] >= 0 &&
-        [2 * other, 2 * other + 1].some((e) => e !== end && endBundle[e] === endBundle[end]));
     const isJoined = (c: number, other: number, position: number): boolean =>
-      (position <= slack && meets(2 * c, other)) ||
-      (position >= pieces.centrelineLength[c] - slack && meets(2 * c + 1, other));
+      (position <= slack && endMeets(network, 2 * c, other)) ||
+      (position >= pieces.centrelineLength[c] - slack && endMeets(network, 2 * c + 1, other));
     return group.flatMap((along) => [
       ...(isJoined(a, b, along.from) || isJoined(b, a, along.otherFrom) ? [along.from] : []),
       ...(isJoined(a, b, along.to) || isJoined(b, a, along.otherTo) ? [along.to] : []),

@@ -1,18 +1,18 @@
-import { FINE_MM, finePieces } from './curve.ts';
+import { finePieces } from './curve.ts';
 import { emptyPieces, type Pieces, setPlace } from './pieces.ts';
 
 /**
- * The same pieces, but those marked in `cut` replaced by as many as it takes to stay within FINE_MM of their curve. A wall
+ * The same pieces, but those marked in `cut` replaced by as many as it takes to stay within `fineMm` of their curve. A wall
  * beside them is then measured within 0.1 µm at any radius, while curves that nothing comes near stay coarse.
  *
  * Cost: linear in the pieces; one of radius R becomes about √(7 R/mm) of them.
  */
-export function cutFinely(pieces: Pieces, cut: Uint8Array): Pieces {
+export function cutFinely(pieces: Pieces, cut: Uint8Array, fineMm: number): Pieces {
   const parts = new Map<number, ReturnType<typeof finePieces>>();
   let count = pieces.count;
   for (const [i, curve] of pieces.curves) {
     if (cut[i] === 0) continue;
-    const fine = finePieces(curve, FINE_MM);
+    const fine = finePieces(curve, fineMm);
     parts.set(i, fine);
     count += fine.length - 1;
   }

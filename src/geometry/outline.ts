@@ -6,15 +6,23 @@ import { distanceToSegment } from './segment.ts';
  * at each inner vertex) is convex, so what several have in common is one convex area: a connected one.
  *
  * An outline is flat, x0 y0 x1 y1 …, turning left in a frame with y up. Its rounds are cut into chords that stand off the
- * arc by no more than ARC_MM.
+ * arc by no more than ARC_MM, or COARSE_SHARE of the radius.
  */
 export type Outline = readonly number[];
 
 /** Finer than what walls are measured to (0.1 µm). */
 const ARC_MM = 5e-5;
 
+/**
+ * How the rounds are cut: `fine` to measure by, `coarse` to ask whether there is anything in common. A coarse round lies
+ * within half a per cent of its radius inside the fine one, with a tenth of its corners where strips are millimetres wide.
+ */
+export type Rounds = 'fine' | 'coarse';
+
+export const COARSE_SHARE = 0.005;
+
 /** The strip of one piece, wider by growMm on every side. */
-export function pieceOutline(pieces: Pieces, piece: number, growMm: number): Outline {
+export function pieceOutline(pieces: Pieces, piece: number, growMm: number, rounds: Rounds): Outline {
   const half = pieces.half[piece] + growMm;
   const ax = pieces.x1[piece];
   const ay = pieces.y1[piece];
@@ -23,8 +31,9 @@ export function pieceOutline(pieces: Pieces, piece: number, growMm: number): Out
   const ux = (bx - ax) / pieces.length[piece];
   const uy = (by - ay) / pieces.length[piece];
   const outline: number[] = [];
-  addEnd(outline, bx, by, ux, uy, half, endsAtVertex(pieces, piece), growMm);
-  addEnd(outline, ax, ay, -ux, -uy, half, startsAtVertex(pieces, piece), growMm);
+  const sagMm = rounds === 'fine' ? ARC_MM : Math.max(ARC_MM, COARSE_SHARE * half);
+  addEnd(outline, bx, by, ux, uy, half, endsAtVertex(pieces, piece), growMm, sagMm);
+  addEnd(outline, ax, ay, -ux, -uy, half, startsAtVertex(pieces, piece), growMm, sagMm);
   return outline;
 }
 
@@ -38,8 +47,9 @@ function addEnd(
   half: number,
   isRound: boolean,
   growMm: number,
+  sagMm: number,
 ): void {
-  const count = isRound ? Math.ceil(Math.PI / 2 / Math.acos(Math.max(0.5, 1 - ARC_MM / half))) : 1;
+  const count = isRound ? Math.ceil(Math.PI / 2 / Math.acos(Math.max(0.5, 1 - sagMm / half))) : 1;
   const beyond = isRound ? 0 : growMm;
   for (let k = 0; k <= count; k++) {
     const angle = Math.PI * (k / count - 0.5);

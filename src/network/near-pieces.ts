@@ -1,4 +1,5 @@
 import type { Chip } from '../chip/types.ts';
+import { FINE_MM } from '../geometry/curve.ts';
 import { cutFinely } from '../geometry/fine-cuts.ts';
 import { findNearPairs, type Nearness } from '../geometry/near.ts';
 import { type Pieces, toPieces } from '../geometry/pieces.ts';
@@ -17,7 +18,7 @@ export function findNearPieces(chip: Chip, withinMm: number): Nearness {
   markPairs(near, cut);
   markAroundEnds(chip, near, cut);
   markAtWells(chip, near, cut);
-  return cut.includes(1) ? findNear(cutFinely(coarse, cut)) : near;
+  return cut.includes(1) ? findNear(cutFinely(coarse, cut, finenessMm(near))) : near;
 
   function findNear(pieces: Pieces): Nearness {
     return findNearPairs(
@@ -27,6 +28,12 @@ export function findNearPieces(chip: Chip, withinMm: number): Nearness {
       chip.file,
     );
   }
+}
+
+/** Finer than a share of the drawing no curve need be cut: on one of many metres it would cost time without bound. */
+function finenessMm({ index }: Nearness): number {
+  const extentMm = index === null ? 0 : Math.max(index.maxX - index.minX, index.maxY - index.minY);
+  return Math.max(FINE_MM, FINE_MM * (extentMm / 1000));
 }
 
 function markPairs({ pieces, pairCount, pairA, pairB, pairDistance }: Nearness, cut: Uint8Array): void {

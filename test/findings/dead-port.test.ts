@@ -21,6 +21,8 @@ describe('dead-port', () => {
           readFileSync(`${stem}.run.yaml`, 'utf8'),
         );
         const { findings } = findAll(context);
+        // Where an outline leads, that nothing is joined follows from the outline.
+        if (findings.some(({ rule }) => rule === 'filled-outline')) continue;
         for (const port of portsWithoutAWay(context.network)) {
           ports++;
           expect(isSpokenOf(findings, port), `${file}: ${port}`).toBe(true);
