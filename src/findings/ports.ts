@@ -1,4 +1,5 @@
 import type { Port } from '../chip/types.ts';
+import { closePorts } from './close-ports.ts';
 import { closestPoints } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 import { nearMisses } from './misses.ts';
@@ -20,7 +21,8 @@ export const portRules: readonly Rule[] = [
     ({ chip }) => chip.limits.portGapM,
     ({ chip }, limit) => {
       const limitMm = limit.value * 1e3;
-      return closePorts(chip.ports, limitMm).map(([one, two, gapMm]) => {
+      return closePorts(chip.ports, limitMm).map(([p, q, gapMm]) => {
+        const [one, two] = [chip.ports[p], chip.ports[q]];
         const ux = (two.xMm - one.xMm) / (Math.hypot(two.xMm - one.xMm, two.yMm - one.yMm) || 1);
         const uy = (two.yMm - one.yMm) / (Math.hypot(two.xMm - one.xMm, two.yMm - one.yMm) || 1);
         const mark = {
@@ -227,24 +229,4 @@ function meetingsInside({ chip, network }: FindingContext, inside: readonly numb
     }
   }
   return count;
-}
-
-/** Pairs of ports whose rims are nearer than a limit, by a sweep over x. */
-function closePorts(ports: readonly Port[], limitMm: number): [Port, Port, number][] {
-  const order = ports.map((_, p) => p).sort((p, q) => ports[p].xMm - ports[q].xMm || p - q);
-  const largest = ports.reduce((most, { radiusMm }) => Math.max(most, radiusMm), 0);
-  const close: [number, number, number][] = [];
-  for (let k = 0; k < order.length; k++) {
-    const one = ports[order[k]];
-    for (let m = k + 1; m < order.length; m++) {
-      const two = ports[order[m]];
-      if (two.xMm - one.xMm > one.radiusMm + largest + limitMm) break;
-      const gapMm = Math.hypot(two.xMm - one.xMm, two.yMm - one.yMm) - one.radiusMm - two.radiusMm;
-      if (isBelow(gapMm, limitMm))
-        close.push([Math.min(order[k], order[m]), Math.max(order[k], order[m]), gapMm]);
-    }
-  }
-  return close
-    .sort((a, b) => a[0] - b[0] || a[1] - b[1])
-    .map(([one, two, gapMm]) => [ports[one], ports[two], gapMm]);
 }

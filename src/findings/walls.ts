@@ -1,5 +1,6 @@
 import type { Channel, Chip, Sourced } from '../chip/types.ts';
 import { findNearPairs, type Nearness } from '../geometry/near.ts';
+import { closePorts } from './close-ports.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 import { type UnjoinedArea, unjoinedAreas } from './etched-area.ts';
 import { replacesWall } from './misses.ts';
@@ -19,6 +20,7 @@ export const wallRules: readonly Rule[] = [
       const findings = [
         ...wallFaults(context).map((wall) => toWallFinding(context, wall)),
         ...wellFindings(context),
+        ...mergedWells(context),
       ];
       return context.chip.channels.length > 0 && minWallMm(context.chip, Number.NaN) === null
         ? { findings, notRun: withoutLimit('thin-wall', 'min_wall', context).notRun }
@@ -218,6 +220,27 @@ function wellFindings(context: FindingContext): Finding[] {
       measure: { value: wall.gapMm / 1e3, limit: wall.limitMm / 1e3, unit: 'm' },
       mark: markOf(wall),
     });
+  });
+}
+
+/** Two wells that overlap are one open hole; they are one node only where a centreline passes from one into the other. */
+function mergedWells({ chip, network }: FindingContext): Finding[] {
+  return closePorts(chip.ports, 0).flatMap(([p, q, gapMm]) => {
+    if (-gapMm <= chip.joinWithinMm || network.portNode[p] === network.portNode[q]) return [];
+    const [one, two] = [chip.ports[p], chip.ports[q]];
+    const share = (one.radiusMm + gapMm / 2) / Math.hypot(two.xMm - one.xMm, two.yMm - one.yMm);
+    return [
+      toFinding('merged-walls', 'blocker', {
+        message: `the wells ${one.name} and ${two.name} overlap by ${distanceText(-gapMm)}: they would be one open hole, but count as two ports`,
+        fix: `move ${two.name} more than ${moveText(-gapMm)} away from ${one.name}; if they are meant to be one, draw one port`,
+        at: {
+          xMm: one.xMm + share * (two.xMm - one.xMm),
+          yMm: one.yMm + share * (two.yMm - one.yMm),
+        },
+        names: [one.name, two.name],
+        measure: { value: gapMm / 1e3, limit: 0, unit: 'm' },
+      }),
+    ];
   });
 }
 
