@@ -1,6 +1,6 @@
 import type { Nearness } from '../geometry/near.ts';
 import type { Pieces } from '../geometry/pieces.ts';
-import { type CentrelineEnds, END_FREE, endPiece, NodeUnion } from './draft.ts';
+import { type CentrelineEnds, END_FREE, NodeUnion } from './draft.ts';
 
 /**
  * Rule 3, bundles: ends of one plane within the slack of each other, chains too. Columns over the ends (2c the start of
@@ -48,28 +48,30 @@ function linksOf(
 ): Link[] {
   const links: Link[] = [];
   const link = (a: number, b: number): void => {
-    const apart = Math.hypot(ends.x[a] - ends.x[b], ends.y[a] - ends.y[b]);
-    if (ends.state[a] === END_FREE && ends.state[b] === END_FREE && apart <= slackMm) links.push([a, b]);
+    const dx = ends.x[a] - ends.x[b];
+    if (dx > slackMm || dx < -slackMm) return;
+    if (Math.hypot(dx, ends.y[a] - ends.y[b]) > slackMm) return;
+    if (ends.state[a] === END_FREE && ends.state[b] === END_FREE) links.push([a, b]);
   };
   for (let k = 0; k < pairCount; k++) {
     if (pairDistance[k] > slackMm) continue;
-    const a = endsOfPiece(pieces, pairA[k]);
-    if (a.length === 0) continue;
-    const b = endsOfPiece(pieces, pairB[k]);
-    for (const one of a) for (const two of b) link(one, two);
+    const [aFrom, aTo] = [firstEnd(pieces, pairA[k]), lastEnd(pieces, pairA[k])];
+    if (aFrom > aTo) continue;
+    const [bFrom, bTo] = [firstEnd(pieces, pairB[k]), lastEnd(pieces, pairB[k])];
+    for (let a = aFrom; a <= aTo; a++) for (let b = bFrom; b <= bTo; b++) link(a, b);
   }
   return links;
 }
 
-const NO_ENDS: readonly number[] = [];
-
-function endsOfPiece(pieces: Pieces, piece: number): readonly number[] {
+/** The ends that a piece has are those from firstEnd to lastEnd, none when the first is beyond the last. */
+function firstEnd(pieces: Pieces, piece: number): number {
   const c = pieces.centreline[piece];
-  if (pieces.centrelineClosed[c] === 1) return NO_ENDS;
-  const isFirst = piece === endPiece(pieces, 2 * c);
-  const isLast = piece === endPiece(pieces, 2 * c + 1);
-  if (isFirst) return isLast ? [2 * c, 2 * c + 1] : [2 * c];
-  return isLast ? [2 * c + 1] : NO_ENDS;
+  return piece === pieces.firstPiece[c] && pieces.centrelineClosed[c] === 0 ? 2 * c : 2 * c + 1;
+}
+
+function lastEnd(pieces: Pieces, piece: number): number {
+  const c = pieces.centreline[piece];
+  return piece === pieces.firstPiece[c + 1] - 1 && pieces.centrelineClosed[c] === 0 ? 2 * c + 1 : 2 * c;
 }
 
 /** The smallest end of each set that the links make; −1 for an end without a link. */

@@ -21,6 +21,7 @@ export interface Runs {
 /** Chains reaches through their seams. Cost: linear in the reaches. */
 export function toRuns(draft: Draft, reaches: Reaches): Runs {
   const next = seams(draft, reaches);
+  if (!next.some((side) => side >= 0)) return singleRuns(reaches.count);
   const first = [0];
   const reach = new Int32Array(reaches.count);
   const reversed = new Uint8Array(reaches.count);
@@ -45,6 +46,17 @@ export function toRuns(draft: Draft, reaches: Reaches): Runs {
     reach,
     reversed,
     isLoop: Uint8Array.from(loops),
+  };
+}
+
+/** Without a seam every reach is a run. */
+function singleRuns(count: number): Runs {
+  return {
+    count,
+    first: Int32Array.from({ length: count + 1 }, (_, n) => n),
+    reach: Int32Array.from({ length: count }, (_, n) => n),
+    reversed: new Uint8Array(count),
+    isLoop: new Uint8Array(count),
   };
 }
 
