@@ -2,7 +2,7 @@ import { formatNumber, type Show } from '../../runsheet/shown.ts';
 import { cleanText } from '../plain-text.ts';
 import { hasWindow, outsideWindows, windowTexts } from '../reach-values.ts';
 import type { ReportedCase } from '../report.ts';
-import type { CountsRow, ReachRow } from '../result-schema.ts';
+import type { CountsRow, ReachRow } from '../result-rows.ts';
 import { verdictCounts } from '../verdict-line.ts';
 import { BODY, type PageContext, SMALL } from './context.ts';
 import { drawingText } from './document.ts';

@@ -14,7 +14,7 @@ import { drawMap, mapNotes } from '../map.ts';
 import { cleanText } from '../plain-text.ts';
 import { hasWindow, outsideWindows, reachesThatMatter, windowTexts } from '../reach-values.ts';
 import { casesLeftOut } from '../report.ts';
-import type { PortRow, ReachRow } from '../result-schema.ts';
+import type { PortRow, ReachRow } from '../result-rows.ts';
 import { plural, verdictCounts } from '../verdict-line.ts';
 import { BODY, BODY_BOLD, depthFrom, isoDate, type PageContext, SMALL } from './context.ts';
 import { drawingText } from './document.ts';
