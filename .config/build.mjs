@@ -1,10 +1,9 @@
 // Builds dist/: one bundle split by what each command needs, declarations, the fonts and the JSON Schemas.
-import { execFileSync } from 'node:child_process';
 import { copyFileSync, mkdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
-import { createRequire } from 'node:module';
 import { dirname, join } from 'node:path';
 import { fileURLToPath, pathToFileURL } from 'node:url';
 import { build } from 'esbuild';
+import { writePublishedTypes } from './published-types.mjs';
 
 const root = join(dirname(fileURLToPath(import.meta.url)), '..');
 const dist = join(root, 'dist');
@@ -41,17 +40,7 @@ writeFileSync(join(dist, 'run-sheet.schema.json'), `${JSON.stringify(runSheetJso
 writeFileSync(join(dist, 'result.schema.json'), `${JSON.stringify(resultJsonSchema(), null, 2)}\n`);
 rmSync(join(dist, 'schemas.js'));
 writeLicences(metafile);
-execFileSync(process.execPath, [typescript(), '--project', join(root, '.config/tsconfig.types.json')], {
-  cwd: root,
-  stdio: 'inherit',
-});
-
-function typescript() {
-  const require = createRequire(import.meta.url);
-  const folder = dirname(require.resolve('typescript/package.json'));
-  const { bin } = JSON.parse(readFileSync(join(folder, 'package.json'), 'utf8'));
-  return join(folder, bin.tsc);
-}
+writePublishedTypes(root, join(dist, 'types'));
 
 /** The licences of every package whose code is in the bundle travel with it. */
 function writeLicences({ inputs }) {

@@ -1,10 +1,11 @@
 /**
- * The public API: the same steps as the command line, as functions, one by one.
+ * The public API: the same steps as the command line, as functions, one by one, and the types that they take and give.
+ * The command line itself is not among them: importing the package does not load it.
  *
  *   readSvg → layOut → assembleChip (with parseRunSheet) → buildNetwork → solveFlow → findAll → buildReport → writers
  */
 export { type Analysis, type AnalysisInput, analyse, analysePump, type OnStage } from './analyse.ts';
-export { assembleChip } from './chip/assemble.ts';
+export { assembleChip, type ChipInput } from './chip/assemble.ts';
 export type {
   Channel,
   Chip,
@@ -15,11 +16,11 @@ export type {
   Port,
   ReadingFault,
 } from './chip/types.ts';
-export { run } from './cli.ts';
-export type { Io } from './commands/io.ts';
-export { draftRunSheet } from './draft/draft.ts';
+export { type DraftInput, draftRunSheet } from './draft/draft.ts';
 export { InputError } from './errors.ts';
 export { findAll } from './findings/check.ts';
+export type { FindingContext } from './findings/context.ts';
+export type { Rule } from './findings/rule.ts';
 export type { Finding, FindingReport, NotRun, Severity } from './findings/types.ts';
 export { layOut } from './layout/layout.ts';
 export type { Layout, LayoutItem } from './layout/types.ts';
@@ -28,17 +29,37 @@ export { type Network, NODE_KINDS, type NodeKind } from './network/types.ts';
 export { type DuctForm, ductForm } from './physics/duct.ts';
 export { writeReachesCsv, writeSegmentsCsv } from './report/csv.ts';
 export { type Detail, writeJson } from './report/json.ts';
-export { buildCasesReport, buildReport, type Report } from './report/report.ts';
-export type { Result } from './report/result.ts';
-export { svgPicture } from './report/svg.ts';
-export { terminalSummary } from './report/terminal.ts';
+export type { MapQuantity } from './report/reach-values.ts';
+export { buildCasesReport, buildReport, type Report, type ReportedCase } from './report/report.ts';
+export type { CasePart, CasesResult, Result, ResultInput, SingleResult } from './report/result.ts';
+export type {
+  BalanceRow,
+  CountsRow,
+  FindingRow,
+  FluidRow,
+  LayoutRow,
+  NodeRow,
+  NotRunRow,
+  PortRow,
+  PumpPart,
+  ReachRow,
+  RunSheetRow,
+  SegmentRow,
+  SpreadPart,
+  ToolRow,
+} from './report/result-rows.ts';
+export type { Rows } from './report/rows.ts';
+export { type SvgOptions, svgPicture } from './report/svg.ts';
+export { type TerminalOptions, terminalSummary } from './report/terminal.ts';
 export { parseRunSheet } from './runsheet/parse.ts';
-export type { RunSheet } from './runsheet/types.ts';
-export { computeSection } from './section/section.ts';
+export type { PortCondition, RunSheet, Tolerances } from './runsheet/types.ts';
+export { computeSection, type SectionInput, type SectionState } from './section/section.ts';
 export { solveFlow } from './solve/flow-state.ts';
-export { type FoundSettings, findSettings } from './solve/targets.ts';
+export type { JointShares } from './solve/joint-share.ts';
+export { type FoundSettings, type FoundTarget, findSettings } from './solve/targets.ts';
 export type { FlowPart, FlowState } from './solve/types.ts';
-export { spreadOf } from './spread/spread.ts';
+export { type Pace, type SpreadOptions, spreadOf } from './spread/spread.ts';
+export type { Spread } from './spread/types.ts';
 export { readSvg } from './svg/read.ts';
 export type { SvgDrawing } from './svg/types.ts';
 export { VERSION } from './version.ts';

@@ -2,7 +2,14 @@ import { realpath, stat } from 'node:fs/promises';
 import { basename, dirname, join } from 'node:path';
 import { InputError } from '../errors.ts';
 import type { InputFile } from './read-files.ts';
-import type { OutFile } from './write-files.ts';
+
+/** Where a file is to be written. */
+export interface OutPlace {
+  /** With its folder, from the root. */
+  readonly path: string;
+  /** What to do where it can't be written there: "choose another folder with --out". */
+  readonly wayOut: string;
+}
 
 /**
  * Stops before anything is written when a file would be written over one that was read, or over another of the same run: the same
@@ -12,7 +19,7 @@ import type { OutFile } from './write-files.ts';
  * Errors: InputError with the way out.
  */
 export async function refuseOverwriting(
-  files: readonly Pick<OutFile, 'path' | 'wayOut'>[],
+  files: readonly OutPlace[],
   inputs: readonly InputFile[],
 ): Promise<void> {
   const read = await Promise.all(

@@ -4,14 +4,10 @@ import { mkdir, open, rename, rm, stat } from 'node:fs/promises';
 import { basename, dirname, join } from 'node:path';
 import { Interrupted, type Io, WriteError } from './io.ts';
 import type { InputFile } from './read-files.ts';
-import { refuseOverwriting } from './refuse-overwriting.ts';
+import { type OutPlace, refuseOverwriting } from './refuse-overwriting.ts';
 
-export interface OutFile {
-  /** With its folder, from the root. */
-  readonly path: string;
+export interface OutFile extends OutPlace {
   readonly content: Uint8Array | Iterable<string>;
-  /** What to do where it can't be written there: "choose another folder with --out". */
-  readonly wayOut: string;
 }
 
 /**
@@ -29,7 +25,7 @@ export async function writeFiles(
 ): Promise<void> {
   await refuseOverwriting(files, inputs);
   const temporary: { readonly from: string; readonly file: OutFile }[] = [];
-  let current: Pick<OutFile, 'path' | 'wayOut'> | undefined;
+  let current: OutPlace | undefined;
   try {
     for (const file of files) {
       const folder = dirname(file.path);

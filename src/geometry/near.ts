@@ -9,11 +9,30 @@ export const MAX_NEAR_PAIRS = 20_000_000;
 /** Stretches of one centreline that come nearer than this are looked at as possible meetings however close along it. */
 const TOUCH_MM = 0.001;
 
+/** What is asked of an index of boxes. Flatbush answers; its own type stays inside, since published types name no package. */
+export interface BoxIndex {
+  /** Round all boxes. */
+  readonly minX: number;
+  readonly minY: number;
+  readonly maxX: number;
+  readonly maxY: number;
+  /** Numbers of the boxes that touch a rectangle, of those that `keep` lets through. */
+  search(minX: number, minY: number, maxX: number, maxY: number, keep?: (index: number) => boolean): number[];
+  /** Numbers of the boxes nearest to a point, the nearest first, of those that `keep` lets through. */
+  neighbors(
+    x: number,
+    y: number,
+    maxResults?: number,
+    maxDistance?: number,
+    keep?: (index: number) => boolean,
+  ): number[];
+}
+
 /** The one spatial index over all pieces, and the one list of pairs of pieces that come near each other. */
 export interface Nearness {
   readonly pieces: Pieces;
   /** Boxes of the painted pieces (strip, cap and bulge), in piece order. Null when there is no piece. */
-  readonly index: Flatbush | null;
+  readonly index: BoxIndex | null;
   /** Pairs are listed when their strips come nearer than this. */
   readonly withinMm: number;
   readonly pairCount: number;

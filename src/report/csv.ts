@@ -1,4 +1,5 @@
-import { type ReachRow, reachColumns, type SegmentRow, segmentColumns } from './result-schema.ts';
+import type { ReachRow, SegmentRow } from './result-rows.ts';
+import { reachColumns, segmentColumns } from './result-schema.ts';
 
 /**
  * CSV after RFC 4180 (CRLF, quotes doubled) in chunks; the first line holds the JSON keys, units included. Numbers are SI and shortest

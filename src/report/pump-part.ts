@@ -1,7 +1,7 @@
 import type { Network } from '../network/types.ts';
 import type { FoundSettings, FoundTarget } from '../solve/targets.ts';
 import { lineAt } from '../solve/targets-limits.ts';
-import type { PumpPart } from './result-schema.ts';
+import type { PumpPart } from './result-rows.ts';
 
 /** The pump part of the JSON document. Numbers are exact: set as given, a check of the same layout reaches the targets. */
 export function pumpPartOf({ chip }: Network, { targets }: FoundSettings): PumpPart {

@@ -2,7 +2,7 @@ import type { Channel } from '../chip/types.ts';
 import { formatNumber, formatShare, type Show, type Shown } from '../runsheet/shown.ts';
 import type { Window } from '../runsheet/types.ts';
 import type { ReportedCase } from './report.ts';
-import type { ReachRow } from './result-schema.ts';
+import type { ReachRow } from './result-rows.ts';
 import { sectionCache } from './section-values.ts';
 
 /** What a map can be coloured by. */

@@ -1,8 +1,8 @@
 import * as v from 'valibot';
 
 /**
- * The one typed description of the result that leaves the program as JSON and CSV: the TypeScript types, the JSON Schema
- * and the CSV columns all come from here. Keys carry their unit; a number that does not exist is null.
+ * The one typed description of the result that leaves the program as JSON and CSV: the TypeScript types (`result-rows.ts`),
+ * the JSON Schema and the CSV columns all come from here. Keys carry their unit; a number that does not exist is null.
  */
 
 const text = v.string();
@@ -280,21 +280,10 @@ export const casesSchema = v.strictObject({
 /** The JSON document, with or without cases. `nodes`, `reaches`, `segments` are there as `--detail` asks. */
 export const resultSchema = v.union([singleSchema, casesSchema]);
 
-export type ToolRow = Readonly<v.InferOutput<typeof toolSchema>>;
-export type LayoutRow = Readonly<v.InferOutput<typeof layoutSchema>>;
-export type RunSheetRow = Readonly<v.InferOutput<typeof runSheetSchema>>;
-export type FluidRow = Readonly<v.InferOutput<typeof fluidSchema>>;
-export type CountsRow = Readonly<v.InferOutput<typeof countsSchema>>;
-export type PortRow = Readonly<v.InferOutput<typeof portSchema>>;
-export type NodeRow = Readonly<v.InferOutput<typeof nodeSchema>>;
-export type ReachRow = Readonly<v.InferOutput<typeof reachSchema>>;
-export type SegmentRow = Readonly<v.InferOutput<typeof segmentSchema>>;
-export type FindingRow = Readonly<v.InferOutput<typeof findingSchema>>;
-export type NotRunRow = Readonly<v.InferOutput<typeof notRunSchema>>;
-export type BalanceRow = Readonly<v.InferOutput<typeof balanceSchema>>;
-export type PumpPart = Readonly<v.InferOutput<typeof pumpSchema>>;
-export type SpreadPart = Readonly<v.InferOutput<typeof spreadSchema>>;
-
 /** CSV columns, in the order of the JSON keys. */
-export const reachColumns = Object.keys(reachSchema.entries) as readonly (keyof ReachRow)[]; // the entries' own keys
-export const segmentColumns = Object.keys(segmentSchema.entries) as readonly (keyof SegmentRow)[]; // likewise
+export const reachColumns = Object.keys(reachSchema.entries) as readonly (keyof v.InferOutput<
+  typeof reachSchema
+>)[]; // the entries' own keys
+export const segmentColumns = Object.keys(segmentSchema.entries) as readonly (keyof v.InferOutput<
+  typeof segmentSchema
+>)[]; // likewise

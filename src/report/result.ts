@@ -19,7 +19,7 @@ import type {
   SegmentRow,
   SpreadPart,
   ToolRow,
-} from './result-schema.ts';
+} from './result-rows.ts';
 import { type Rows, rows } from './rows.ts';
 import { sectionCache } from './section-values.ts';
 

@@ -1,6 +1,6 @@
 import type { Spread } from '../spread/types.ts';
 import { table } from './csv.ts';
-import type { SpreadPart } from './result-schema.ts';
+import type { SpreadPart } from './result-rows.ts';
 
 const COLUMNS = [
   'on',

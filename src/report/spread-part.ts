@@ -1,5 +1,5 @@
 import type { Spread } from '../spread/types.ts';
-import type { SpreadPart } from './result-schema.ts';
+import type { SpreadPart } from './result-rows.ts';
 
 /** The spread as it stands in the result document. */
 export function spreadPartOf(spread: Spread): SpreadPart {

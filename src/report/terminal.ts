@@ -3,7 +3,7 @@ import { formatMm } from '../runsheet/shown.ts';
 import { cleanText, clipText, displayWidth, padText, wrapText } from './plain-text.ts';
 import { hasWindow, outsideWindows, reachesThatMatter, windowTexts } from './reach-values.ts';
 import type { Report, ReportedCase } from './report.ts';
-import type { FindingRow } from './result-schema.ts';
+import type { FindingRow } from './result-rows.ts';
 import { casesLine, verdictCounts } from './verdict-line.ts';
 
 export interface TerminalOptions {

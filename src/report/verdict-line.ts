@@ -1,7 +1,7 @@
 import { listText } from '../findings/words.ts';
 import { cleanText } from './plain-text.ts';
 import { casesLeftOut, type Report } from './report.ts';
-import type { CountsRow } from './result-schema.ts';
+import type { CountsRow } from './result-rows.ts';
 
 /** The verdict, never without its counts: "ready: 0 blockers, 3 cautions, 2 accepted, 4 rules not run". */
 export function verdictLine(verdict: 'ready' | 'hold', counts: CountsRow): string {

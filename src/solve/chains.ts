@@ -2,7 +2,7 @@
  * Series chains: live edges that follow one another through nodes where nothing else can enter or leave have one flow, and count as one edge.
  * What is left are the core nodes (terminals and branchings) and the chains between them. Cost O(nodes + edges).
  */
-import type { FlowGraph } from './graph.ts';
+import type { FlowGraph } from './flow-graph.ts';
 import type { LiveGraph } from './live.ts';
 
 export interface Chains {

@@ -9,10 +9,10 @@
 
 import { type Balance, balanceOf } from './balance.ts';
 import { drivesOf, type PortDrive } from './drives.ts';
+import type { FlowGraph } from './flow-graph.ts';
 import type { FlowNetwork } from './flow-network.ts';
 import {
   analyseGraph,
-  type FlowGraph,
   factorGraph,
   type GraphAnalysis,
   type GraphFactor,

@@ -11,14 +11,8 @@ import { type Analysis, analyse } from '../sparse/analyse.ts';
 import { type Factor, factor } from '../sparse/factor.ts';
 import { type CircuitFlow, type Resistance, solveRefined } from '../sparse/refine.ts';
 import { type Chains, gatherChains } from './chains.ts';
+import type { FlowGraph } from './flow-graph.ts';
 import { findLiveEdges } from './live.ts';
-
-export interface FlowGraph {
-  readonly nodeCount: number;
-  /** Ends of each edge. Parallel edges each carry their own; an edge from a node to itself carries 0. */
-  readonly from: Int32Array;
-  readonly to: Int32Array;
-}
 
 export interface GraphAnalysis {
   readonly graph: FlowGraph;

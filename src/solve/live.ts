@@ -4,7 +4,7 @@
  * biconnected block with that node. Everything else hangs on one node only, be it a stub, a tree or a loop, and carries nothing.
  * Source: R. Tarjan, SIAM J. Comput. 1 (1972) 146 (blocks by depth-first search). Cost O(nodes + edges), no recursion.
  */
-import type { FlowGraph } from './graph.ts';
+import type { FlowGraph } from './flow-graph.ts';
 
 export interface LiveGraph {
   /** Edges at each node, each edge from a node to itself left out: edgeAt[start[i]] … edgeAt[start[i + 1] − 1]. */

@@ -2,13 +2,8 @@ import fc from 'fast-check';
 import { all, create, type Matrix } from 'mathjs';
 import { describe, expect, test } from 'vitest';
 import { balanceOf } from '../../src/solve/balance.ts';
-import {
-  analyseGraph,
-  type FlowGraph,
-  factorGraph,
-  type GraphFlow,
-  solveGraph,
-} from '../../src/solve/graph.ts';
+import type { FlowGraph } from '../../src/solve/flow-graph.ts';
+import { analyseGraph, factorGraph, type GraphFlow, solveGraph } from '../../src/solve/graph.ts';
 import {
   type Gradient,
   gradientOfFlow,

@@ -1,4 +1,4 @@
-import type { FlowGraph } from '../../src/solve/graph.ts';
+import type { FlowGraph } from '../../src/solve/flow-graph.ts';
 
 export function graphOf(nodeCount: number, edges: readonly (readonly [number, number])[]): FlowGraph {
   return {

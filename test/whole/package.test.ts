@@ -1,13 +1,32 @@
 import { spawnSync } from 'node:child_process';
-import { existsSync, mkdtempSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
+import { cpSync, existsSync, mkdtempSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
+import { createRequire } from 'node:module';
 import { tmpdir } from 'node:os';
-import { join } from 'node:path';
+import { dirname, join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import * as api from '../../src/index.ts';
 import { VERSION } from '../../src/version.ts';
 
 const root = new URL('../..', import.meta.url).pathname;
 const packageJson = JSON.parse(readFileSync(join(root, 'package.json'), 'utf8'));
+
+const consumer = readFileSync(join(root, 'test/whole/consumer/main.ts'), 'utf8');
+
+/** Exports as src/index.ts lists them, one by one, sorted by name. */
+const exported = [
+  ...readFileSync(join(root, 'src/index.ts'), 'utf8').matchAll(/^export (type )?\{([^}]+)\}/gm),
+]
+  .flatMap(([, isAllTypes, names]) =>
+    names
+      .split(',')
+      .map((name) => name.trim())
+      .filter((name) => name !== '')
+      .map((name) => ({
+        name: name.replace(/^type /, ''),
+        isType: isAllTypes !== undefined || name.startsWith('type '),
+      })),
+  )
+  .sort((a, b) => (a.name < b.name ? -1 : 1));
 
 describe('the package', () => {
   it('has one version', () => {
@@ -24,6 +43,17 @@ describe('the package', () => {
 
   it('exports these functions and no others', () => {
     expect(Object.keys(api).sort()).toMatchSnapshot();
+    const functions = exported.filter(({ isType }) => !isType).map(({ name }) => name);
+    expect(functions).toEqual(Object.keys(api).sort());
+  });
+
+  it('exports these types and no others', () => {
+    expect(exported.filter(({ isType }) => isType).map(({ name }) => name)).toMatchSnapshot();
+  });
+
+  it('has every export used by the program that is compiled against it', () => {
+    const unused = exported.filter(({ name }) => !new RegExp(`\\brillcheck\\.${name}\\b`).test(consumer));
+    expect(unused).toEqual([]);
   });
 });
 
@@ -100,4 +130,80 @@ describe.skipIf(!existsSync(join(root, 'dist/bin.js')))('the packed tarball (ski
     // Exact constant of the square duct, R h⁴/(µL) = 28.4541537695623 (computed from the series to many digits).
     expect(stdout, stderr).toMatch(/^28\.45415376956\d* true/);
   });
+
+  it('compiles into a strict program that skips no declaration, and names no package that is not there', () => {
+    // the user has no types but these: none of Node's, none of the packages bundled
+    const compilerOptions = {
+      target: 'ES2022',
+      lib: ['ES2023'],
+      types: [],
+      module: 'NodeNext',
+      strict: true,
+      exactOptionalPropertyTypes: true,
+      skipLibCheck: false,
+      noEmitOnError: true,
+      outDir: 'consumer',
+    };
+    cpSync(join(root, 'test/whole/consumer/main.ts'), join(folder, 'main.ts'));
+    writeFileSync(join(folder, 'tsconfig.json'), JSON.stringify({ compilerOptions, files: ['main.ts'] }));
+    writeFileSync(join(folder, 'package.json'), '{ "private": true, "type": "module" }');
+    const compiled = node(folder, typescript(), '-p', '.');
+    expect(compiled.stdout).toBe('');
+    expect(compiled.status, compiled.stderr).toBe(0);
+
+    const layout = join(root, 'layouts-demo/culture');
+    const program = `
+      import { readFileSync } from 'node:fs';
+      import { useAll, whereOf } from './consumer/main.js';
+      console.log(await useAll(readFileSync('${layout}.svg', 'utf8'), readFileSync('${layout}.run.yaml', 'utf8')));
+      await useAll('<svg', '').catch((error) => console.log(whereOf(error)));`;
+    const { stdout, stderr } = node(folder, '--input-type=module', '-e', program);
+    expect(stderr).toBe('');
+    expect(stdout).toMatch(
+      /^chip\.svg {2}ready.*\n18 channels, 3 stages, 16 draws\nall written\nchip\.svg:1\n$/,
+    );
+  }, 60_000);
+
+  it('runs the example of the README', () => {
+    const readme = readFileSync(join(root, 'README.md'), 'utf8');
+    const [, program, output] = /```js\n([\s\S]*?)```\n\n```text\n([\s\S]*?)```/.exec(readme) ?? [];
+    cpSync(join(root, 'layouts-demo'), join(folder, 'layouts-demo'), { recursive: true });
+    writeFileSync(join(folder, 'example.mjs'), program);
+    const { stdout, stderr } = node(folder, 'example.mjs');
+    expect(stderr).toBe('');
+    expect(stdout).toBe(output);
+  });
+
+  it('loads no command line when it is imported', () => {
+    const ofLibrary = loaded(folder, "import 'rillcheck'");
+    const ofCommandLine = loaded(folder, "import './node_modules/rillcheck/dist/bin.js'");
+    // what commander calls its errors
+    const holding = (files: ReadonlyMap<string, string>) =>
+      [...files].filter(([, text]) => text.includes('commander.')).map(([file]) => file);
+    expect(holding(ofCommandLine)).toHaveLength(1);
+    expect([...ofLibrary.keys()]).toContain('index.js');
+    expect(holding(ofLibrary)).toEqual([]);
+  });
 });
+
+function node(cwd: string, ...args: string[]) {
+  return spawnSync(process.execPath, args, { cwd, encoding: 'utf8' });
+}
+
+function typescript(): string {
+  const require = createRequire(import.meta.url);
+  const file = require.resolve('typescript/package.json');
+  return join(dirname(file), JSON.parse(readFileSync(file, 'utf8')).bin.tsc);
+}
+
+/** The files of dist/ that a program really loads, by a hook on Node's loader, with their texts. */
+function loaded(folder: string, program: string): ReadonlyMap<string, string> {
+  const hook = `export async function load(url, context, next) { console.error("loaded " + url); return next(url, context); }`;
+  const url = `data:text/javascript,${encodeURIComponent(hook)}`;
+  writeFileSync(join(folder, 'hook.mjs'), `import { register } from 'node:module'; register('${url}');`);
+  writeFileSync(join(folder, 'loads.mjs'), program);
+  const { stderr, status } = node(folder, '--import', './hook.mjs', 'loads.mjs', '--version');
+  expect(status, stderr).toBe(0);
+  const paths = [...stderr.matchAll(/^loaded file:\/\/(.*\/rillcheck\/dist\/(.*))$/gm)];
+  return new Map(paths.map(([, path, name]) => [name, readFileSync(path, 'utf8')]));
+}

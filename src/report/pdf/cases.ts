@@ -2,14 +2,15 @@ import { formatNumber, type Show } from '../../runsheet/shown.ts';
 import { cleanText } from '../plain-text.ts';
 import { hasWindow, outsideWindows, windowTexts } from '../reach-values.ts';
 import type { ReportedCase } from '../report.ts';
-import type { CountsRow, ReachRow } from '../result-schema.ts';
+import type { CountsRow, ReachRow } from '../result-rows.ts';
 import { verdictCounts } from '../verdict-line.ts';
 import { BODY, type PageContext, SMALL } from './context.ts';
-import { drawingText } from './document.ts';
+import { drawingText } from './drawing-text.ts';
 import { factsHeight, writeFacts } from './facts.ts';
 import { writeFoundBox } from './found-box.ts';
-import { FACTS, inputFacts, writePressureMap } from './front-page.ts';
+import { FACTS, inputFacts } from './input-facts.ts';
 import type { Element, Paper } from './paper.ts';
+import { writePressureMap } from './pressure-map.ts';
 import { SIGN_HEIGHT, writeBanner, writeSignatures } from './sign-off.ts';
 import { cells, drawTable, type TableRow } from './table.ts';
 

@@ -4,6 +4,7 @@ import { casesLine, verdictLine } from '../verdict-line.ts';
 import { writeCases } from './cases.ts';
 import { writeCautions } from './cautions.ts';
 import { isoDate, pageContext } from './context.ts';
+import { drawingText } from './drawing-text.ts';
 import { writeFindings } from './findings.ts';
 import { writeFrontPage } from './front-page.ts';
 import { writeHandCheck } from './hand-check.ts';
@@ -82,17 +83,4 @@ function headLine(report: Report, title: string): string {
   const verdict = 'cases' in result ? casesLine(report) : verdictLine(result.verdict, result.counts);
   const settings = cases.some(({ pump }) => pump !== undefined) ? AT_FOUND_SETTINGS : '';
   return [title, drawing, verdict, settings].filter((part) => part !== '').join('  ·  ');
-}
-
-/** "C-114 revision B": what of it the run sheet gives. */
-export function drawingText({
-  number,
-  revision,
-}: {
-  readonly number: string | null;
-  readonly revision: string | null;
-}): string {
-  return [number === null ? null : `drawing ${number}`, revision === null ? null : `revision ${revision}`]
-    .filter((part) => part !== null)
-    .join(', ');
 }

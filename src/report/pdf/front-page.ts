@@ -1,27 +1,24 @@
-import type { Chip } from '../../chip/types.ts';
 import { listText } from '../../findings/words.ts';
 import {
   formatBound,
-  formatMm,
   formatNumber,
   largestMagnitude,
   type Show,
   type Shown,
   type Unit,
 } from '../../runsheet/shown.ts';
-import { jointsText } from '../joints-text.ts';
-import { drawMap, mapNotes } from '../map.ts';
 import { cleanText } from '../plain-text.ts';
 import { hasWindow, outsideWindows, reachesThatMatter, windowTexts } from '../reach-values.ts';
 import { casesLeftOut } from '../report.ts';
-import type { PortRow, ReachRow } from '../result-schema.ts';
+import type { PortRow, ReachRow } from '../result-rows.ts';
 import { plural, verdictCounts } from '../verdict-line.ts';
-import { BODY, BODY_BOLD, depthFrom, isoDate, type PageContext, SMALL } from './context.ts';
-import { drawingText } from './document.ts';
+import { BODY, BODY_BOLD, type PageContext, SMALL } from './context.ts';
+import { drawingText } from './drawing-text.ts';
 import { factsHeight, writeFacts } from './facts.ts';
 import { writeFoundBox } from './found-box.ts';
-import { paintMap } from './paint-map.ts';
-import { type Element, POINTS_PER_MM } from './paper.ts';
+import { FACTS, inputFacts } from './input-facts.ts';
+import type { Element } from './paper.ts';
+import { writePressureMap } from './pressure-map.ts';
 import { SIGN_HEIGHT, writeBanner, writeSignatures } from './sign-off.ts';
 import { type Column, cells, drawTable, type TableRow } from './table.ts';
 
@@ -54,8 +51,6 @@ export function writeFrontPage(context: PageContext): void {
     writePorts(context, section, 'Ports, continued', ports.slice(here.length), 0);
   }
 }
-
-export const FACTS = { keyWidth: 62, size: 6.5 } as const;
 
 function writeVerdict({ paper, report, one }: PageContext, section: Element): void {
   const { sheet } = one.network.chip;
@@ -96,31 +91,6 @@ function writeVerdict({ paper, report, one }: PageContext, section: Element): vo
       ? lines.join(' ')
       : `${lines.slice(0, 2).join(' ')} … All are listed with the findings.`;
   paper.paragraph(section, shown, SMALL);
-}
-
-/** The chip coloured by pressure, between here and `below` points above the foot of the page. */
-export function writePressureMap(
-  { paper, one, geometry, measure, readable }: PageContext,
-  section: Element,
-  below: number,
-): void {
-  const room = paper.bottom - below - paper.y - 90;
-  const drawing = drawMap(one, geometry, {
-    quantity: 'pressure',
-    widthMm: paper.width / POINTS_PER_MM,
-    heightMm: Math.max(60, Math.min(room / POINTS_PER_MM, 130)),
-    labelSizeMm: 2.1,
-    measure,
-    readable,
-    findingNumbers: true,
-    reachLabels: false,
-  });
-  const counts = one.part.counts;
-  const alt = `The chip as drawn, ${plural(counts.channels, 'channel')} coloured by pressure, ${plural(counts.ports, 'port')} named; the numbers are in the tables.`;
-  paintMap(paper, section, drawing, paper.left, paper.y, alt);
-  paper.y += drawing.heightMm * POINTS_PER_MM;
-  const numbers = drawing.markers.length === 0 ? '' : ' Numbers are those of the findings.';
-  paper.paragraph(section, `${mapNotes(drawing)}${numbers}`, SMALL);
 }
 
 function writePorts(
@@ -278,68 +248,4 @@ function writeReachesThatMatter({ paper, one }: PageContext, section: Element, r
     paper.y -= 4;
     paper.paragraph(section, `… and ${of - rows.length} more in the table of reaches.`, SMALL);
   }
-}
-
-export function inputFacts({ report, one, date }: PageContext): readonly (readonly [string, string])[] {
-  const { chip } = one.network;
-  const { layout, run_sheet, tool } = report.result;
-  const joints = jointsText(one.network.joints);
-  return [
-    ['layout', `${layout.file}, SHA-256 ${layout.sha256}`],
-    [
-      'run sheet',
-      run_sheet === null
-        ? 'none: geometry rules only, defaults elsewhere'
-        : `${run_sheet.file}, SHA-256 ${run_sheet.sha256}`,
-    ],
-    ['fluid', fluidText(chip)],
-    ['depth', depthText(chip)],
-    ['chip size', sizeText(chip)],
-    [
-      'joints',
-      chip.joints === 'centreline'
-        ? 'centreline: corners, bends and junctions add nothing of their own'
-        : `resolved: each computed joint adds its end correction${joints === null ? '' : `; ${joints}`}`,
-    ],
-    ['not read', ignoredText(chip)],
-    ['written', `by ${tool.name} ${tool.version} on ${isoDate(date)}`],
-  ];
-}
-
-function fluidText({ fluid }: Chip): string {
-  const celsius = formatNumber(Number((fluid.temperatureK - 273.15).toFixed(6)));
-  return `${fluid.name} at ${celsius} °C: viscosity ${formatNumber(fluid.viscosityPaS * 1000)} mPa s, density ${formatNumber(fluid.densityKgM3)} kg/m³ (${fluid.source})`;
-}
-
-const LAYERS_LISTED = 8;
-
-function depthText({ layers }: Chip): string {
-  const listed = layers.slice(0, LAYERS_LISTED).map((layer) => {
-    const { name, depthM, profile } = layer;
-    const depth = Number.isNaN(depthM)
-      ? 'depth unknown'
-      : `${formatNumber(depthM * 1e6)} µm (${depthFrom(layer)})`;
-    return `${name === '' ? 'strokes in no layer' : name} ${depth}${profile === 'isotropic' ? ', isotropic profile' : ''}`;
-  });
-  const more = layers.length - listed.length;
-  return (
-    [...listed, ...(more > 0 ? [`and ${plural(more, 'more layer')}, listed with the model`] : [])].join(
-      '; ',
-    ) || 'no layer'
-  );
-}
-
-function sizeText({ edge, sizeMm, widthMm, heightMm, unitReason }: Chip): string {
-  const sides = (size: readonly [number, number]): string => `${formatMm(size[0])} × ${formatMm(size[1])} mm`;
-  const read = edge === null ? 'no chip edge drawn' : `${sides(edge.sidesMm)} as read from ${edge.name}`;
-  const wanted = sizeMm === null ? 'no size given to compare' : `${sides(sizeMm)} wanted`;
-  const drawing = widthMm === null || heightMm === null ? '' : `; drawing ${sides([widthMm, heightMm])}`;
-  return `${read}; ${wanted}${drawing}; scale: ${unitReason}`;
-}
-
-function ignoredText({ ignored }: Chip): string {
-  const kinds = Object.entries(ignored).filter(([, count]) => count > 0);
-  return kinds.length === 0
-    ? 'nothing: all that is drawn was read'
-    : kinds.map(([kind, count]) => `${count} ${kind}`).join(', ');
 }

@@ -2,7 +2,7 @@ import { sectionForm } from '../../physics/section.ts';
 import { formatNumber, type Show } from '../../runsheet/shown.ts';
 import { reachesThatMatter } from '../reach-values.ts';
 import type { ReportedCase } from '../report.ts';
-import type { ReachRow } from '../result-schema.ts';
+import type { ReachRow } from '../result-rows.ts';
 import { BODY, type PageContext } from './context.ts';
 import type { Element } from './paper.ts';
 import { cells, drawTable } from './table.ts';

@@ -9,7 +9,7 @@ import {
 } from '../../runsheet/shown.ts';
 import { hasWindow, outsideWindows, windowTexts } from '../reach-values.ts';
 import type { ReportedCase } from '../report.ts';
-import type { ReachRow } from '../result-schema.ts';
+import type { ReachRow } from '../result-rows.ts';
 import { plural } from '../verdict-line.ts';
 import { type PageContext, SMALL } from './context.ts';
 import { type Column, drawTable, type TableRow } from './table.ts';

@@ -1,6 +1,6 @@
 import { formatMm, formatNumber, largestMagnitude, type Shown } from '../../runsheet/shown.ts';
 import type { ReportedCase } from '../report.ts';
-import type { SegmentRow } from '../result-schema.ts';
+import type { SegmentRow } from '../result-rows.ts';
 import { type PageContext, SMALL } from './context.ts';
 import { type Column, drawTable, type TableRow } from './table.ts';
 

@@ -1,0 +1,135 @@
+/**
+ * A user's program: every function and every type that the package exports, under its own strict compiler options.
+ * package.test.ts compiles it against the packed tarball and runs it; it is no part of this repository's own program.
+ */
+import * as rillcheck from 'rillcheck';
+
+/** No exported type is any: where T is, the answer is never, which nothing fits. */
+type Known<T> = 0 extends 1 & T ? never : T;
+
+/** Of each stage what it hands on, so that a wrong type anywhere fails to compile. */
+export async function useAll(svg: string, yaml: string): Promise<string> {
+  const drawing: Known<rillcheck.SvgDrawing> = rillcheck.readSvg(svg, 'chip.svg');
+  const layout: Known<rillcheck.Layout> = rillcheck.layOut(drawing, 'chip.svg');
+  const items: readonly Known<rillcheck.LayoutItem>[] = layout.items;
+  const draftInput: Known<rillcheck.DraftInput> = { layout, file: 'chip.svg', tool: rillcheck.VERSION };
+  const draft: string = rillcheck.draftRunSheet(draftInput);
+  const sheet: Known<rillcheck.RunSheet> = rillcheck.parseRunSheet(yaml, 'chip.run.yaml');
+
+  const input: Known<rillcheck.AnalysisInput> & Known<rillcheck.ChipInput> = {
+    layout,
+    sheet,
+    file: 'chip.svg',
+    layoutSha256: '0'.repeat(64),
+  };
+  const chip: Known<rillcheck.Chip> = rillcheck.assembleChip(input);
+  const channels: readonly Known<rillcheck.Channel>[] = chip.channels;
+  const ports: readonly Known<rillcheck.Port>[] = chip.ports;
+  const conditions: readonly Known<rillcheck.PortCondition>[] = ports.map(({ condition }) => condition);
+  const layers: readonly Known<rillcheck.ChipLayer>[] = chip.layers;
+  const edge: Known<rillcheck.ChipEdge> | null = chip.edge;
+  const limits: Known<rillcheck.ChipLimits> = chip.limits;
+  const fluid: Known<rillcheck.Fluid> = chip.fluid;
+  const faults: readonly Known<rillcheck.ReadingFault>[] = chip.faults;
+
+  const network: Known<rillcheck.Network> = rillcheck.buildNetwork(chip);
+  const kinds: readonly Known<rillcheck.NodeKind>[] = rillcheck.NODE_KINDS;
+  const round: readonly number[] = network.trace.near.index?.search(0, 0, 1, 1) ?? [];
+  const flow: Known<rillcheck.FlowState> = rillcheck.solveFlow(network);
+  const parts: readonly Known<rillcheck.FlowPart>[] = flow.parts;
+
+  const context: Known<rillcheck.FindingContext> = { chip, network, flow };
+  const rule: Known<rillcheck.Rule> = {
+    names: ['my-own'],
+    run: ({ chip: { file } }) => ({ findings: [], notRun: [{ rule: 'my-own', why: file }] }),
+  };
+  const judged: Known<rillcheck.FindingReport> = rillcheck.findAll(context);
+  const own: readonly Known<rillcheck.NotRun>[] = rillcheck.findAll(context, [rule]).notRun;
+  const findings: readonly Known<rillcheck.Finding>[] = judged.findings;
+  const severities: readonly Known<rillcheck.Severity>[] = findings.map(({ severity }) => severity);
+
+  const stages: string[] = [];
+  const onStage: Known<rillcheck.OnStage> = async (stage) => {
+    stages.push(stage);
+  };
+  const analysis: Known<rillcheck.Analysis> = await rillcheck.analyse(input, onStage);
+  const shares: Known<rillcheck.JointShares> = analysis.jointShares;
+  const settings: Known<rillcheck.FoundSettings> = rillcheck.findSettings(network);
+  const targets: readonly Known<rillcheck.FoundTarget>[] = settings.targets;
+  const pumped: Known<rillcheck.Analysis> = (await rillcheck.analysePump(input)).analysis;
+
+  const tolerances: Known<rillcheck.Tolerances> | null = sheet.tolerances;
+  if (tolerances === null) throw new Error('the run sheet of this example has tolerances');
+  const draws: Known<rillcheck.SpreadOptions> = { draws: 16, seed: 1 };
+  const pace: Known<rillcheck.Pace> = { due: () => false, rest: async () => 'go on' };
+  const spread: Known<rillcheck.Spread> = await rillcheck.spreadOf(network, tolerances, draws, pace);
+
+  const result: Known<rillcheck.ResultInput> = {
+    ...analysis,
+    tool: { name: 'rillcheck', version: rillcheck.VERSION },
+    layoutFile: 'chip.svg',
+  };
+  const report: Known<rillcheck.Report> = rillcheck.buildReport(result);
+  const inCases: Known<rillcheck.Report> = rillcheck.buildCasesReport([{ name: 'seed', input: result }]);
+  const [one]: readonly Known<rillcheck.ReportedCase>[] = report.cases;
+  if (one === undefined) throw new Error('a report has a case');
+  useRows(report.result, one.part);
+
+  const detail: Known<rillcheck.Detail> = 'reaches';
+  const json: string = [...rillcheck.writeJson(inCases.result, detail)].join('');
+  const reaches: string = [...rillcheck.writeReachesCsv(one.part.reaches)].join('');
+  const segments: string = [...rillcheck.writeSegmentsCsv(one.part.segments)].join('');
+  const quantity: Known<rillcheck.MapQuantity> = 'shear';
+  const picture: Known<rillcheck.SvgOptions> = { quantity };
+  const terminal: Known<rillcheck.TerminalOptions> = { colour: false, columns: 80, quiet: true };
+
+  const section: Known<rillcheck.SectionInput> = {
+    widthM: 5e-4,
+    depthM: 5e-5,
+    lengthM: 0.02,
+    profile: 'rectangle',
+    viscosityPaS: 1e-3,
+    densityKgM3: 1000,
+    given: { kind: 'flow', flowM3s: 1e-10 },
+  };
+  const duct: Known<rillcheck.SectionState> = rillcheck.computeSection(section);
+  const form: Known<rillcheck.DuctForm> = rillcheck.ductForm(5e-4, 5e-5);
+
+  void [edge, limits, fluid, faults, conditions, layers, kinds, round, parts, own, severities];
+  void [shares, targets, pumped, items, form, duct];
+  const texts = [draft, json, reaches, segments, rillcheck.svgPicture(one, picture)];
+  return [
+    rillcheck.terminalSummary(report, terminal).trim(),
+    `${channels.length} channels, ${stages.length} stages, ${spread.draws} draws`,
+    texts.every((text) => text.length > 100) ? 'all written' : 'something is missing',
+  ].join('\n');
+}
+
+function useRows(
+  result: Known<rillcheck.Result>,
+  part: Known<rillcheck.CasePart>,
+): Known<rillcheck.SingleResult> | Known<rillcheck.CasesResult> {
+  const tool: Known<rillcheck.ToolRow> = result.tool;
+  const layout: Known<rillcheck.LayoutRow> = result.layout;
+  const runSheet: Known<rillcheck.RunSheetRow> = result.run_sheet;
+  const fluid: Known<rillcheck.FluidRow> = part.fluid;
+  const counts: Known<rillcheck.CountsRow> = part.counts;
+  const ports: readonly Known<rillcheck.PortRow>[] = part.ports;
+  const nodes: Known<rillcheck.Rows<Known<rillcheck.NodeRow>>> = part.nodes;
+  const reaches: Known<rillcheck.Rows<Known<rillcheck.ReachRow>>> = part.reaches;
+  const segments: Known<rillcheck.Rows<Known<rillcheck.SegmentRow>>> = part.segments;
+  const findings: readonly Known<rillcheck.FindingRow>[] = part.findings;
+  const notRun: readonly Known<rillcheck.NotRunRow>[] = part.not_run;
+  const balance: Known<rillcheck.BalanceRow> = part.balance;
+  const pump: Known<rillcheck.PumpPart> | undefined = part.pump;
+  const spread: Known<rillcheck.SpreadPart> | undefined = part.spread;
+  void [tool, layout, runSheet, fluid, counts, findings, notRun, balance, pump, spread];
+  const flows: readonly (number | null)[] = [...ports, ...reaches].map(({ flow_m3_s }) => flow_m3_s);
+  void [flows, nodes, segments];
+  return result;
+}
+
+/** What cannot be read is an error of a class of its own. */
+export function whereOf(error: unknown): string {
+  return error instanceof rillcheck.InputError ? error.where : '';
+}
