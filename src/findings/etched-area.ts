@@ -13,7 +13,7 @@ import { isInPieceStrip } from '../geometry/strip.ts';
 import { closestPoints, type Line } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 import { endMeets } from './end-meets.ts';
-import { portsNear } from './misses.ts';
+import { portsNear } from './near-ports.ts';
 import { lineOf } from './painted.ts';
 import { channelPaths } from './paths.ts';
 import { coveredLength, type Facing, groupStretches } from './stretches.ts';

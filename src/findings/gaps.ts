@@ -1,6 +1,7 @@
 import type { Closest, Line } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
-import { nearMisses, paintedEndOf, portsNear } from './misses.ts';
+import { nearMisses, paintedEndOf } from './misses.ts';
+import { portsNear } from './near-ports.ts';
 import { gapBetween, gapOfEndToHole, gapToEnd, gapToHole, lineOf } from './painted.ts';
 import { partsOnDrawing } from './parts.ts';
 import { type Tip, tipsOf } from './tips.ts';

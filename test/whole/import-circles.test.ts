@@ -5,7 +5,7 @@ import { describe, expect, it } from 'vitest';
 const src = new URL('../../src', import.meta.url).pathname;
 
 /** Folders whose circles are still to be undone, each within the folder. */
-const LEFT = ['network', 'findings'];
+const LEFT = ['network'];
 
 /** By file, from src/: the files it names, types included. */
 const imports = new Map(
