@@ -1,7 +1,8 @@
 import type { Chip } from '../chip/types.ts';
 import { FINE_MM, finePieces } from '../geometry/curve.ts';
 import { endsAtVertex, type Pieces, startsAtVertex } from '../geometry/pieces.ts';
-import { isNextToCurvedEnd } from '../geometry/strip.ts';
+import { ROUND, type Rounding, turnOf } from '../geometry/rounding.ts';
+import { isNextToCurvedEnd, roundingAtEnd, roundingAtStart } from '../geometry/strip.ts';
 import { type Closest, closestPoints, type Line, nearer } from './closest.ts';
 
 /**
@@ -9,11 +10,11 @@ import { type Closest, closestPoints, type Line, nearer } from './closest.ts';
  * inner vertex and round cap; butt caps end square, square caps half a width further on.
  */
 
-/** A line with all that lies within a radius of it; an area when `filled` holds its corners. */
+/** A line with all that lies within a radius of it; an area when it has corners. */
 interface Part {
   readonly lines: readonly Line[];
   readonly radius: number;
-  /** Corners of a filled four-sided area whose sides `lines` are; null for a line. */
+  /** Corners of a filled convex area whose sides `lines` are; null for a line. */
   readonly corners: readonly (readonly [number, number])[] | null;
 }
 
@@ -97,7 +98,7 @@ export function hasFlatEnd(chip: Chip, pieces: Pieces, i: number): boolean {
   const { linecap } = chip.channels[pieces.channel[i]];
   if (linecap === 'round') return false;
   if (!startsAtVertex(pieces, i) || !endsAtVertex(pieces, i)) return true;
-  return linecap === 'butt' && isNextToCurvedEnd(pieces, i);
+  return linecap === 'butt' && (isNextToCurvedEnd(pieces, i) || sectorsOf(pieces, i).some(isSector));
 }
 
 /** Straight sides (with the radius that goes round them) of the painted area of a piece. */
@@ -149,14 +150,22 @@ function partsOf(chip: Chip, pieces: Pieces, i: number): Part[] {
   const lines = linesOf(pieces, i);
   // Next to a flat end on a curve round ends would reach beyond it: what they would fill is less than 0.1 µm.
   const isPlain = linecap === 'butt' && isNextToCurvedEnd(pieces, i);
-  if (!flatStart && !flatEnd && !isPlain) return [{ lines, radius: half, corners: null }];
+  // A square cap reaches beyond any round that stands less than half a width before it.
+  const [atStart, atEnd]: readonly (Rounding | null)[] =
+    linecap === 'butt' ? sectorsOf(pieces, i) : [ROUND, ROUND];
+  const isWhole = !flatStart && !flatEnd && !isPlain && !isSector(atStart) && !isSector(atEnd);
+  if (isWhole) return [{ lines, radius: half, corners: null }];
   const beyond = linecap === 'square' ? half : 0;
   const parts: Part[] = [];
   lines.forEach((line, k) => {
     const start = flatStart && k === 0 ? 2 * pieces.centreline[i] : -1;
     const end = flatEnd && k === lines.length - 1 ? 2 * pieces.centreline[i] + 1 : -1;
-    if (start < 0 && end < 0 && !isPlain) parts.push({ lines: [line], radius: half, corners: null });
-    else addFlatParts(parts, pieces, line, half, beyond, start, end, !isPlain);
+    const rounds: readonly (Rounding | null)[] = isPlain
+      ? NO_ROUNDS
+      : [k === 0 ? atStart : ROUND, k === lines.length - 1 ? atEnd : ROUND];
+    if (start < 0 && end < 0 && rounds.every((round) => round === ROUND))
+      parts.push({ lines: [line], radius: half, corners: null });
+    else addFlatParts(parts, pieces, line, half, beyond, start, end, rounds);
   });
   return parts;
 }
@@ -170,7 +179,7 @@ function addFlatParts(
   beyond: number,
   start: number,
   end: number,
-  round: boolean,
+  rounds: readonly (Rounding | null)[],
 ): void {
   const { outX, outY } = pieces;
   const length = Math.hypot(bx - ax, by - ay);
@@ -188,13 +197,53 @@ function addFlatParts(
     [qx + ey * half, qy - ex * half],
     [px + sy * half, py - sx * half],
   ] as const;
-  into.push({
-    lines: corners.map(([x, y], k): Line => [x, y, ...corners[(k + 1) % 4]]),
-    radius: 0,
-    corners,
-  });
-  if (round && start < 0) into.push(disc(ax, ay, half));
-  if (round && end < 0) into.push(disc(bx, by, half));
+  into.push(areaOf(corners));
+  if (start < 0) addRound(into, rounds[0], ax, ay, -ux, -uy, half);
+  if (end < 0) addRound(into, rounds[1], bx, by, ux, uy, half);
+}
+
+const NO_ROUNDS: readonly null[] = [null, null];
+
+/** The round at (x, y), where a line ends in direction (ux, uy). */
+function addRound(
+  into: Part[],
+  rounding: Rounding | null,
+  x: number,
+  y: number,
+  ux: number,
+  uy: number,
+  half: number,
+): void {
+  if (rounding === null) return;
+  if (rounding === ROUND) {
+    into.push(disc(x, y, half));
+    return;
+  }
+  const { angle, side } = turnOf(ux, uy, rounding);
+  const count = Math.ceil(angle / 2 / Math.acos(Math.max(0.5, 1 - FINE_MM / half)));
+  if (count === 0) return;
+  const corners: [number, number][] = [[x, y]];
+  for (let k = 0; k <= count; k++) {
+    const turned = (angle * k) / count;
+    const along = half * Math.sin(turned);
+    const across = side * half * Math.cos(turned);
+    corners.push([x + along * ux - across * uy, y + along * uy + across * ux]);
+  }
+  into.push(areaOf(corners));
+}
+
+function areaOf(corners: readonly (readonly [number, number])[]): Part {
+  const lines = corners.map(([x, y], k): Line => [x, y, ...corners[(k + 1) % corners.length]]);
+  return { lines, radius: 0, corners };
+}
+
+/** How the strip of a piece goes on at its two ends. */
+function sectorsOf(pieces: Pieces, i: number): readonly (Rounding | null)[] {
+  return [roundingAtStart(pieces, i, null, 0), roundingAtEnd(pieces, i, null, 0)];
+}
+
+function isSector(rounding: Rounding | null): boolean {
+  return rounding !== null && rounding !== ROUND;
 }
 
 function disc(x: number, y: number, radius: number): Part {
@@ -234,9 +283,9 @@ function closestOf(one: readonly Line[], two: readonly Line[]): Closest {
 function contains({ corners }: Part, [x, y]: Line): boolean {
   if (corners === null) return false;
   let side = 0;
-  for (let k = 0; k < 4; k++) {
+  for (let k = 0; k < corners.length; k++) {
     const [ax, ay] = corners[k];
-    const [bx, by] = corners[(k + 1) % 4];
+    const [bx, by] = corners[(k + 1) % corners.length];
     const cross = (bx - ax) * (y - ay) - (by - ay) * (x - ax);
     if (cross === 0) continue;
     if (side !== 0 && Math.sign(cross) !== side) return false;

@@ -1,9 +1,12 @@
-import { endsAtVertex, type Pieces, startsAtVertex } from './pieces.ts';
+import type { Pieces } from './pieces.ts';
+import { ROUND, type Rounding, turnOf } from './rounding.ts';
 import { distanceToSegment } from './segment.ts';
+import { roundingAtEnd, roundingAtStart } from './strip.ts';
 
 /**
- * Outlines of pieces of strips, and what they have in common. The strip of one straight piece (a rectangle, with a disc
- * at each inner vertex) is convex, so what several have in common is one convex area: a connected one.
+ * Outlines of pieces of strips, and what they have in common. The strip of one straight piece (a rectangle, with a round
+ * at each inner vertex) is convex, so what several have in common is one convex area: a connected one. Where the round is
+ * but a sector, the outline is the least convex one round both.
  *
  * An outline is flat, x0 y0 x1 y1 …, turning left in a frame with y up. Its rounds are cut into chords that stand off the
  * arc by no more than ARC_MM, or COARSE_SHARE of the radius.
@@ -32,12 +35,12 @@ export function pieceOutline(pieces: Pieces, piece: number, growMm: number, roun
   const uy = (by - ay) / pieces.length[piece];
   const outline: number[] = [];
   const sagMm = rounds === 'fine' ? ARC_MM : Math.max(ARC_MM, COARSE_SHARE * half);
-  addEnd(outline, bx, by, ux, uy, half, endsAtVertex(pieces, piece), growMm, sagMm);
-  addEnd(outline, ax, ay, -ux, -uy, half, startsAtVertex(pieces, piece), growMm, sagMm);
+  addEnd(outline, bx, by, ux, uy, half, roundingAtEnd(pieces, piece, null, growMm), growMm, sagMm);
+  addEnd(outline, ax, ay, -ux, -uy, half, roundingAtStart(pieces, piece, null, growMm), growMm, sagMm);
   return outline;
 }
 
-/** The end of a strip at a point with direction (ux, uy) out of it: half a round, or two square corners. */
+/** The end of a strip at a point with direction (ux, uy) out of it: half a round, a sector of it, or two square corners. */
 function addEnd(
   into: number[],
   x: number,
@@ -45,18 +48,23 @@ function addEnd(
   ux: number,
   uy: number,
   half: number,
-  isRound: boolean,
+  rounding: Rounding | null,
   growMm: number,
   sagMm: number,
 ): void {
-  const count = isRound ? Math.ceil(Math.PI / 2 / Math.acos(Math.max(0.5, 1 - sagMm / half))) : 1;
-  const beyond = isRound ? 0 : growMm;
-  for (let k = 0; k <= count; k++) {
-    const angle = Math.PI * (k / count - 0.5);
-    const along = half * Math.cos(angle) * (isRound ? 1 : 0) + beyond;
+  const beyond = rounding === null ? growMm : 0;
+  const add = (angle: number, radius: number): void => {
+    const along = radius * Math.cos(angle) + beyond;
     const across = half * Math.sin(angle);
     into.push(x + along * ux - across * uy, y + along * uy + across * ux);
-  }
+  };
+  const turn = rounding === null || rounding === ROUND ? null : turnOf(ux, uy, rounding);
+  const sweep = rounding === ROUND ? Math.PI : (turn?.angle ?? 0);
+  const first = -Math.PI / 2 + (turn?.side === 1 ? Math.PI - sweep : 0);
+  if (turn?.side === 1 || sweep === 0) add(-Math.PI / 2, 0);
+  const count = Math.ceil(sweep / 2 / Math.acos(Math.max(0.5, 1 - sagMm / half)));
+  for (let k = 0; k <= count && sweep > 0; k++) add(first + (sweep * k) / count, half);
+  if (turn?.side === -1 || sweep === 0) add(Math.PI / 2, 0);
 }
 
 /**

@@ -1,14 +1,17 @@
 import { endsAtVertex, goesOnSmoothly, neighbourPiece, type Pieces, startsAtVertex } from './pieces.ts';
+import { ROUND, type Rounding, roundingAtVertex } from './rounding.ts';
 
 /**
  * The strip of a channel: the etched area within half its width of the centreline, round at inner vertices, square at
- * its ends. It is handled piece by piece: a rectangle along each piece and a disc at each inner vertex.
+ * its ends. It is handled piece by piece: a rectangle along each piece and a round at each inner vertex (rounding.ts).
  *
  * Slack decides *whether* a point counts as inside; lengths are always measured to the exact wall or square end.
  */
 export interface StripEnds {
   /** True where a centreline end is a seam: an equal strip goes on there, so the end is an inner vertex. Index 2c start, 2c + 1 end. */
   readonly seam: Uint8Array;
+  /** The end that it makes the seam with, −1 for none or several. */
+  readonly seamWith: Int32Array;
 }
 
 /** Whether the point is inside the part of the strip that belongs to one piece, within slack. */
@@ -37,9 +40,17 @@ export function isInPieceStrip(
     if (Math.abs(across) <= half && atStart <= slackMm && atEnd <= slackMm) return true;
     if ((along < 0 ? startOut : endOut) !== null) return false;
   } else if (Math.abs(across) <= half && along >= -slackMm && along <= length + slackMm) return true;
-  if (along < 0 && roundAtStart(pieces, piece, ends)) return Math.hypot(x - ax, y - ay) <= half;
-  if (along > length && roundAtEnd(pieces, piece, ends)) return Math.hypot(x - bx, y - by) <= half;
+  if (along < 0)
+    return isInRound(roundingAtStart(pieces, piece, ends, slackMm), x - ax, y - ay, half, slackMm);
+  if (along > length)
+    return isInRound(roundingAtEnd(pieces, piece, ends, slackMm), x - bx, y - by, half, slackMm);
   return false;
+}
+
+/** Whether a place beyond the end of a piece, seen from there, lies in the round. */
+function isInRound(rounding: Rounding | null, x: number, y: number, half: number, slackMm: number): boolean {
+  if (rounding === null || Math.hypot(x, y) > half) return false;
+  return rounding === ROUND || x * rounding.onX + y * rounding.onY <= Math.max(rounding.mostMm, slackMm);
 }
 
 /**
@@ -56,6 +67,9 @@ export function addStripStretches(
   by: number,
   slackMm: number,
   ends: StripEnds | null,
+  keptFrom = 0,
+  keptTo = pieces.centrelineLength[pieces.centreline[piece]],
+  growMm = 0,
 ): void {
   const shape: PieceShape = {
     px: pieces.x1[piece],
@@ -63,9 +77,10 @@ export function addStripStretches(
     qx: pieces.x2[piece],
     qy: pieces.y2[piece],
     length: pieces.length[piece],
-    half: pieces.half[piece],
-    startIsRound: roundAtStart(pieces, piece, ends),
-    endIsRound: roundAtEnd(pieces, piece, ends),
+    half: pieces.half[piece] + growMm,
+    growMm,
+    atStart: roundingAtStart(pieces, piece, ends, slackMm, keptFrom, keptTo),
+    atEnd: roundingAtEnd(pieces, piece, ends, slackMm, keptFrom, keptTo),
     ...(pieces.bulge[piece] > 0 ? cutEnds(pieces, piece, ends) : STRAIGHT),
   };
   addShapeStretches(into, shape, ax, ay, bx, by, slackMm);
@@ -90,12 +105,12 @@ function cutEnds(pieces: Pieces, piece: number, ends: StripEnds | null): CutEnds
   return {
     startOut: startsAtVertex(pieces, piece)
       ? mitre(pieces, piece, isMitred ? neighbourPiece(pieces, piece, -1) : -1, -1)
-      : roundAtStart(pieces, piece, ends)
+      : isRoundAt(pieces, piece, ends, 0)
         ? null
         : [outX[end], outY[end]],
     endOut: endsAtVertex(pieces, piece)
       ? mitre(pieces, piece, isMitred ? neighbourPiece(pieces, piece, 1) : -1, 1)
-      : roundAtEnd(pieces, piece, ends)
+      : isRoundAt(pieces, piece, ends, 1)
         ? null
         : [outX[end + 1], outY[end + 1]],
   };
@@ -136,7 +151,7 @@ function isOneCurve(pieces: Pieces, from: number, to: number): boolean {
   return true;
 }
 
-/** One straight piece p→q of a strip: a rectangle, with a disc at each end that is an inner vertex or a seam. */
+/** One straight piece p→q of a strip: a rectangle, with a round at each end that is an inner vertex or a seam; null where square. */
 export interface PieceShape extends CutEnds {
   readonly px: number;
   readonly py: number;
@@ -144,8 +159,10 @@ export interface PieceShape extends CutEnds {
   readonly qy: number;
   readonly length: number;
   readonly half: number;
-  readonly startIsRound: boolean;
-  readonly endIsRound: boolean;
+  /** How far square ends stand beyond p and q: 0 where lengths are measured. */
+  readonly growMm?: number;
+  readonly atStart: Rounding | null;
+  readonly atEnd: Rounding | null;
 }
 
 /** The same for one shape. */
@@ -160,7 +177,9 @@ export function addShapeStretches(
 ): void {
   const span = Math.hypot(bx - ax, by - ay);
   if (span === 0) return;
-  const { px, py, qx, qy, length, half, startIsRound, endIsRound, startOut, endOut } = shape;
+  const { px, py, qx, qy, length, half, growMm = 0, atStart, atEnd, startOut, endOut } = shape;
+  const startIsRound = atStart !== null;
+  const endIsRound = atEnd !== null;
   const ux = (qx - px) / length;
   const uy = (qy - py) / length;
   const dx = (bx - ax) / span;
@@ -181,14 +200,31 @@ export function addShapeStretches(
       let to = Math.min(lateral[1], along[1]);
       const leavesThroughEnd = along[1] < lateral[1];
       if (leavesThroughEnd) {
-        const exact = between(startIsRound ? low : 0, endIsRound ? high : 0);
+        const exact = between(startIsRound ? low : -growMm, endIsRound ? high : growMm);
         to = exact === null ? from : Math.max(from, Math.min(to, exact[1]));
       }
       if (to >= from) into.push(from, to);
     }
   }
-  if (startIsRound && startOut === null) addDiscStretch(into, px, py, half, ax, ay, dx, dy, span);
-  if (endIsRound && endOut === null) addDiscStretch(into, qx, qy, half, ax, ay, dx, dy, span);
+  if (atStart !== null && startOut === null) addRound(atStart, px, py, -ux, -uy);
+  if (atEnd !== null && endOut === null) addRound(atEnd, qx, qy, ux, uy);
+
+  /** The round at (x, y), where the piece ends in direction (outX, outY). */
+  function addRound(rounding: Rounding, x: number, y: number, outX: number, outY: number): void {
+    if (rounding === ROUND) {
+      addDiscStretch(into, x, y, half, ax, ay, dx, dy, span);
+      return;
+    }
+    const beyond = beside([-outX, -outY], x, y, TINY_MM);
+    const before = beside([rounding.onX, rounding.onY], x, y, rounding.mostMm);
+    if (beyond === null || before === null) return;
+    const disc: number[] = [];
+    addDiscStretch(disc, x, y, half, ax, ay, dx, dy, span);
+    if (disc.length === 0) return;
+    const from = Math.max(beyond[0], before[0], disc[0]);
+    const to = Math.min(beyond[1], before[1], disc[1]);
+    if (from <= to) into.push(from, to);
+  }
 
   /** Not before the first end by more than −low, nor beyond the second by more than high. */
   function between(low: number, high: number): readonly [number, number] | null {
@@ -236,12 +272,56 @@ export function coveredUpTo(stretches: readonly number[], from: number, slackMm:
 /** Far below any drawn length, far above rounding: gaps of this size between parts of one strip are no gaps. */
 const TINY_MM = 1e-9;
 
-export function roundAtStart(pieces: Pieces, piece: number, ends: StripEnds | null): boolean {
-  return startsAtVertex(pieces, piece) || (ends !== null && ends.seam[2 * pieces.centreline[piece]] === 1);
+/** How the strip goes on beyond the first point of a piece; null where it ends square. `keptFrom` … `keptTo` is what of the centreline is kept. */
+export function roundingAtStart(
+  pieces: Pieces,
+  piece: number,
+  ends: StripEnds | null,
+  slackMm: number,
+  keptFrom = 0,
+  keptTo = pieces.centrelineLength[pieces.centreline[piece]],
+): Rounding | null {
+  if (!startsAtVertex(pieces, piece))
+    return roundingAtSeam(pieces, 2 * pieces.centreline[piece], ends, slackMm);
+  return roundingAtVertex(pieces, piece, -1, keptFrom, keptTo);
 }
 
-export function roundAtEnd(pieces: Pieces, piece: number, ends: StripEnds | null): boolean {
-  return endsAtVertex(pieces, piece) || (ends !== null && ends.seam[2 * pieces.centreline[piece] + 1] === 1);
+/** The same beyond its last point. */
+export function roundingAtEnd(
+  pieces: Pieces,
+  piece: number,
+  ends: StripEnds | null,
+  slackMm: number,
+  keptFrom = 0,
+  keptTo = pieces.centrelineLength[pieces.centreline[piece]],
+): Rounding | null {
+  if (!endsAtVertex(pieces, piece))
+    return roundingAtSeam(pieces, 2 * pieces.centreline[piece] + 1, ends, slackMm);
+  return roundingAtVertex(pieces, piece, 1, keptFrom, keptTo);
+}
+
+/**
+ * The round at a seam, null where the end is none. Where either stroke goes on for less than half a width it may end square
+ * inside the disc, so only the sector between the two is round; the two ends may be a few slacks apart.
+ */
+export function roundingAtSeam(
+  pieces: Pieces,
+  end: number,
+  ends: StripEnds | null,
+  slackMm: number,
+): Rounding | null {
+  if (ends === null || ends.seam[end] !== 1) return null;
+  const { centrelineLength, half, firstPiece, outX, outY } = pieces;
+  const other = ends.seamWith[end];
+  if (other < 0) return ROUND;
+  const shorter = Math.min(centrelineLength[end >> 1], centrelineLength[other >> 1]);
+  if (shorter >= half[firstPiece[end >> 1]]) return ROUND;
+  return { onX: -outX[other], onY: -outY[other], mostMm: 2 * slackMm };
+}
+
+function isRoundAt(pieces: Pieces, piece: number, ends: StripEnds | null, side: 0 | 1): boolean {
+  const isVertex = side === 0 ? startsAtVertex(pieces, piece) : endsAtVertex(pieces, piece);
+  return isVertex || (ends !== null && ends.seam[2 * pieces.centreline[piece] + side] === 1);
 }
 
 /** The t in [0, span] with low ≤ w0 + t dw ≤ high. */

@@ -1,10 +1,12 @@
 import { pieceAt } from '../geometry/pieces.ts';
+import { type Rounding, sectorTo } from '../geometry/rounding.ts';
 import {
   addShapeStretches,
   addStripStretches,
   type PieceShape,
-  roundAtEnd,
-  roundAtStart,
+  roundingAtEnd,
+  roundingAtSeam,
+  roundingAtStart,
   STRAIGHT,
   type StripEnds,
 } from '../geometry/strip.ts';
@@ -42,7 +44,7 @@ export class KeptStrips {
     const startMoves = from > start || growsAtStart;
     const endMoves = to < end || growsAtEnd;
     if (pieces.centrelineClosed[c] === 1 || !(startMoves || endMoves)) {
-      addStripStretches(into, pieces, piece, ax, ay, bx, by, slackMm, this.ends);
+      addStripStretches(into, pieces, piece, ax, ay, bx, by, slackMm, this.ends, from, to);
       return;
     }
     if (to <= start || from >= end) return;
@@ -52,10 +54,13 @@ export class KeptStrips {
     }
     const low = startMoves ? from : start;
     const high = endMoves ? to : end;
-    const { seam } = this.ends;
     this.addShape(into, c, low, high, ax, ay, bx, by, {
-      startIsRound: startMoves ? seam[2 * c] === 1 : roundAtStart(pieces, piece, this.ends),
-      endIsRound: endMoves ? seam[2 * c + 1] === 1 : roundAtEnd(pieces, piece, this.ends),
+      atStart: startMoves
+        ? roundingAtSeam(pieces, 2 * c, this.ends, slackMm)
+        : roundingAtStart(pieces, piece, this.ends, slackMm, from, to),
+      atEnd: endMoves
+        ? roundingAtSeam(pieces, 2 * c + 1, this.ends, slackMm)
+        : roundingAtEnd(pieces, piece, this.ends, slackMm, from, to),
     });
   }
 
@@ -79,24 +84,36 @@ export class KeptStrips {
     bx: number,
     by: number,
   ): void {
-    const { pieces } = this.draft;
+    const { pieces, slackMm } = this.draft;
     const c = pieces.centreline[piece];
+    const from = this.kept.from[c];
+    const to = this.kept.to[c];
     const start = pieces.start[piece];
     const end = start + pieces.length[piece];
-    const low = growsAtStart ? start : Math.max(start, this.kept.from[c]);
-    const high = growsAtEnd ? end : Math.min(end, this.kept.to[c]);
+    const low = growsAtStart ? start : Math.max(start, from);
+    const high = growsAtEnd ? end : Math.min(end, to);
+    const outOf = (end: number): Rounding => sectorTo(pieces.outX[end], pieces.outY[end]);
+    const ux = (pieces.x2[piece] - pieces.x1[piece]) / pieces.length[piece];
+    const uy = (pieces.y2[piece] - pieces.y1[piece]) / pieces.length[piece];
     this.addShape(into, c, low, high, ax, ay, bx, by, {
-      startIsRound: growsAtStart || (low === start && roundAtStart(pieces, piece, this.ends)),
-      endIsRound: growsAtEnd || (high === end && roundAtEnd(pieces, piece, this.ends)),
+      atStart: growsAtStart
+        ? outOf(2 * c)
+        : low === start
+          ? roundingAtStart(pieces, piece, this.ends, slackMm, from, to)
+          : null,
+      atEnd: growsAtEnd
+        ? outOf(2 * c + 1)
+        : high === end
+          ? roundingAtEnd(pieces, piece, this.ends, slackMm, from, to)
+          : null,
     });
-    const { seam } = this.ends;
     if (growsAtStart) {
-      const startIsRound = seam[2 * c] === 1;
-      this.addShape(into, c, this.kept.from[c], start, ax, ay, bx, by, { startIsRound, endIsRound: true });
+      const atStart = roundingAtSeam(pieces, 2 * c, this.ends, slackMm);
+      this.addShape(into, c, from, start, ax, ay, bx, by, { atStart, atEnd: sectorTo(ux, uy) });
     }
     if (growsAtEnd) {
-      const endIsRound = seam[2 * c + 1] === 1;
-      this.addShape(into, c, end, this.kept.to[c], ax, ay, bx, by, { startIsRound: true, endIsRound });
+      const atEnd = roundingAtSeam(pieces, 2 * c + 1, this.ends, slackMm);
+      this.addShape(into, c, end, to, ax, ay, bx, by, { atStart: sectorTo(-ux, -uy), atEnd });
     }
   }
 
@@ -110,7 +127,7 @@ export class KeptStrips {
     ay: number,
     bx: number,
     by: number,
-    round: Pick<PieceShape, 'startIsRound' | 'endIsRound'>,
+    round: Pick<PieceShape, 'atStart' | 'atEnd'>,
   ): void {
     const { draft } = this;
     const p = { x: 0, y: 0 };

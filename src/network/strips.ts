@@ -45,7 +45,8 @@ const FEW = 32;
 
 /**
  * How far a centreline, walked from position `from` in the given direction, stays inside a strip without leaving it
- * (mm; 0 when it leaves at once): as joined where `kept` is given, else as drawn. Walks piece by piece and looks only at the
+ * (mm; 0 when it leaves at once): as joined and to the exact wall where `kept` is given, else as drawn and to the wall within
+ * the slack, which decides whether it stayed inside. Walks piece by piece and looks only at the
  * pieces near each as drawn, and at those `grown` towards the walk by what was carried on.
  */
 export function reachInStrip(
@@ -130,7 +131,23 @@ function coverage(
   const stretches: number[] = [];
   for (const piece of near) {
     if (kept !== null) kept.addStretches(stretches, piece, ax, ay, bx, by);
-    else addStripStretches(stretches, draft.pieces, piece, ax, ay, bx, by, draft.slackMm, null);
+    else {
+      const length = draft.pieces.centrelineLength[draft.pieces.centreline[piece]];
+      addStripStretches(
+        stretches,
+        draft.pieces,
+        piece,
+        ax,
+        ay,
+        bx,
+        by,
+        draft.slackMm,
+        null,
+        0,
+        length,
+        draft.slackMm,
+      );
+    }
   }
   return Math.max(0, coveredUpTo(stretches, offset, draft.slackMm) - offset);
 }

@@ -116,7 +116,7 @@ export function findTrims(
       if (length > 0) addTrim(line, from, way, length, factorByRule, factorResolved);
       if (pieces.centrelineClosed[line] === 1) return;
       const end = way === 1 ? kept.to[line] : kept.from[line];
-      const next = strips.seamWith[2 * line + (way === 1 ? 1 : 0)];
+      const next = strips.ends.seamWith[2 * line + (way === 1 ? 1 : 0)];
       if (next < 0 || Math.abs(from + way * length - end) > draft.slackMm || length <= 0) return;
       line = next >> 1;
       if (line === c) return;
@@ -208,8 +208,6 @@ interface UnitedStrips {
   /** A centreline that stands for all centrelines of one strip. */
   readonly group: Int32Array;
   readonly ends: StripEnds;
-  /** For each end (2c, 2c + 1) the end that it makes a seam with, −1 for none or several. */
-  readonly seamWith: Int32Array;
 }
 
 /** Strips of equal width and depth that meet end to end are one strip, and the seam between them is an inner vertex. */
@@ -260,7 +258,7 @@ function uniteEqualStrips(draft: Draft, stops: Stops, kept: Kept, byNode: NodeSt
     }
   }
   for (let c = 0; c < pieces.centrelineCount; c++) group[c] = find(c);
-  return { group, ends: { seam }, seamWith };
+  return { group, ends: { seam, seamWith } };
 }
 
 function countEnds(

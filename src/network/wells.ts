@@ -1,6 +1,7 @@
 import type { Port } from '../chip/types.ts';
-import { endsAtVertex, startsAtVertex } from '../geometry/pieces.ts';
+import { ROUND, type Rounding } from '../geometry/rounding.ts';
 import { distanceToSegment, nearestParameter } from '../geometry/segment.ts';
+import { roundingAtEnd, roundingAtStart } from '../geometry/strip.ts';
 import { type Draft, END_IN_PORT, endPiece, endPosition } from './draft.ts';
 
 /**
@@ -176,6 +177,11 @@ function circleTouchesStrip(draft: Draft, port: Port, i: number): boolean {
   const nx = pieces.x1[i] + along * ux - clamped * uy;
   const ny = pieces.y1[i] + along * uy + clamped * ux;
   if (Math.hypot(nx - port.xMm, ny - port.yMm) <= port.radiusMm + slackMm) return true;
-  // Outside the corner of an inner vertex the strip is round: the distance to the vertex, already compared, decides.
-  return (along === 0 && startsAtVertex(pieces, i)) || (along === length && endsAtVertex(pieces, i));
+  // Outside the corner of an inner vertex the strip is round: the distance to the vertex, already compared, decides; where it
+  // is but a sector, the centre must lie before it too, or the next piece decides.
+  const isBefore = (rounding: Rounding | null, x: number, y: number): boolean =>
+    rounding !== null && (rounding === ROUND || x * rounding.onX + y * rounding.onY <= slackMm);
+  if (along === 0) return isBefore(roundingAtStart(pieces, i, null, slackMm), wx, wy);
+  const atEnd = along === length ? roundingAtEnd(pieces, i, null, slackMm) : null;
+  return isBefore(atEnd, port.xMm - pieces.x2[i], port.yMm - pieces.y2[i]);
 }

@@ -450,29 +450,18 @@ function toPlaces(network: Network): Place[][] {
   return places;
 }
 
-/** Rectangles and rounds of a whole strip. Between long pieces the round is a sector: the rectangles hold the rest. */
+/** Rectangles and rounds of a whole strip. The round is a sector: the rectangles hold the rest, and nothing reaches beyond a square end. */
 function stripPaths(pieces: Pieces, c: number, growMm: number, arcMm?: number): Paths64 {
   const first = pieces.firstPiece[c];
   const last = pieces.firstPiece[c + 1] - 1;
   const paths: Paths64 = [];
-  if (pieces.half[first] + growMm <= 0) return paths;
+  const half = pieces.half[first] + growMm;
+  if (half <= 0) return paths;
   for (let i = first; i <= last; i++) {
-    const next = i < last ? i + 1 : first;
-    const half = pieces.half[i] + growMm;
-    const isSector =
-      endsAtVertex(pieces, i) && Math.min(pieces.length[i], pieces.length[next]) > half + Math.abs(growMm);
-    const before = i > first ? i - 1 : last;
-    const startsWithSector =
-      startsAtVertex(pieces, i) &&
-      Math.min(pieces.length[i], pieces.length[before]) > half + Math.abs(growMm);
-    const { x1, y1, x2, y2 } = lineOf(pieces, i);
-    const bare = { x1, y1, x2, y2, half: pieces.half[i] };
+    const bare = { ...lineOf(pieces, i), half: pieces.half[i] };
     paths.push(...rectanglePaths(bare, growMm, startsAtVertex(pieces, i), endsAtVertex(pieces, i)));
-    if (startsAtVertex(pieces, i) && !startsWithSector) paths.push(discPath(x1, y1, half, growMm > 0, arcMm));
-    if (endsAtVertex(pieces, i)) {
-      if (isSector) paths.push(...sectorPaths(bare, lineOf(pieces, next), half, growMm > 0));
-      else paths.push(discPath(x2, y2, half, growMm > 0, arcMm));
-    }
+    if (!endsAtVertex(pieces, i)) continue;
+    paths.push(...sectorPaths(bare, lineOf(pieces, i < last ? i + 1 : first), half, growMm > 0, arcMm));
   }
   return paths;
 }
@@ -534,13 +523,22 @@ function chunksOf(pieces: Pieces, c: number): Chunk[] {
           x2: bx,
           y2: by,
           half: pieces.half[i],
-          roundStart: k === 0 && startsAtVertex(pieces, i),
-          roundEnd: k === count - 1 && endsAtVertex(pieces, i),
+          roundStart: k === 0 && startsAtVertex(pieces, i) && !isNearEnd(pieces, c, pieces.start[i]),
+          roundEnd:
+            k === count - 1 &&
+            endsAtVertex(pieces, i) &&
+            !isNearEnd(pieces, c, pieces.start[i] + pieces.length[i]),
         },
       });
     }
   }
   return chunks;
+}
+
+/** Whether a disc at a position would reach beyond an end that is square; without it the strip lacks a sliver at most. */
+function isNearEnd(pieces: Pieces, c: number, s: number): boolean {
+  const half = pieces.half[pieces.firstPiece[c]];
+  return pieces.centrelineClosed[c] === 0 && (s < half || pieces.centrelineLength[c] - s < half);
 }
 
 function pointOf({ paths }: Area): [number, number] {

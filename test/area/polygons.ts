@@ -81,7 +81,13 @@ export function rectanglePaths(
 }
 
 /** Where one straight piece goes on in another, the sector of the round that neither rectangle holds; none when they are in line. */
-export function sectorPaths(one: Straight, next: Straight, radius: number, outside: boolean): Paths64 {
+export function sectorPaths(
+  one: Straight,
+  next: Straight,
+  radius: number,
+  outside: boolean,
+  arcMm = ARC_MM,
+): Paths64 {
   const from = Math.atan2(one.y2 - one.y1, one.x2 - one.x1);
   let turn = Math.atan2(next.y2 - next.y1, next.x2 - next.x1) - from;
   if (turn > Math.PI) turn -= 2 * Math.PI;
@@ -91,7 +97,7 @@ export function sectorPaths(one: Straight, next: Straight, radius: number, outsi
   const side = turn > 0 ? -1 : 1;
   const start = from + (side * Math.PI) / 2 - Math.sign(turn) * 1e-3;
   const sweep = turn + Math.sign(turn) * 2e-3;
-  const count = Math.max(1, Math.ceil(Math.abs(sweep) / (2 * arcStep(radius))));
+  const count = Math.max(1, Math.ceil(Math.abs(sweep) / (2 * arcStep(radius, arcMm))));
   const r = outside ? radius / Math.cos(Math.abs(sweep) / count / 2) : radius;
   const points = [[one.x2, one.y2]];
   for (let k = 0; k <= count; k++) {
@@ -102,7 +108,7 @@ export function sectorPaths(one: Straight, next: Straight, radius: number, outsi
 }
 
 /** Half the angle that one side of a polygon may span. */
-function arcStep(radius: number, arcMm = ARC_MM): number {
+function arcStep(radius: number, arcMm: number): number {
   return Math.acos(Math.max(0.5, 1 - arcMm / radius));
 }
 

@@ -94,3 +94,24 @@ describe('channels of two planes at one port', () => {
     }
   });
 });
+
+describe('a branch in two strokes whose seam is at the wall of the main', () => {
+  it('is joined once, to within the slack on either side of the wall, at whatever angle', () => {
+    for (let degrees = 15; degrees <= 165; degrees += 5) {
+      const angle = (degrees * Math.PI) / 180;
+      for (const off of [-1.1e-3, -0.9e-3, -1e-4, 0, 1e-4, 5e-4, 9e-4, 0.99e-3, 1.1e-3]) {
+        const seam = (0.1 + off) / Math.sin(angle);
+        const at = (s: number): number[] => [10 + s * Math.cos(angle), 10 + s * Math.sin(angle)];
+        const network = buildNetwork(
+          chipOf([
+            { name: 'main', widthMm: 0.2, lines: [[2, 10, 18, 10]] },
+            { name: 'stub', widthMm: 0.15, lines: [[...at(0), ...at(seam)]] },
+            { name: 'branch', widthMm: 0.15, lines: [[...at(seam), ...at(6)]] },
+          ]),
+        );
+        expect(network.reachCount, `${degrees}°, ${off} mm beyond the wall`).toBe(4);
+        expect(network.nodeCount).toBe(5);
+      }
+    }
+  });
+});
