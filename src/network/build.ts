@@ -1,4 +1,5 @@
 import type { Chip } from '../chip/types.ts';
+import { type Arcs, toArcs } from './arcs.ts';
 import type { Bundles } from './bundles.ts';
 import { type Draft, END_FREE, END_IN_PORT, Marks, NodeUnion, pointAt, toEnds } from './draft.ts';
 import { addDuctJoints, type DuctJoints } from './duct-joints.ts';
@@ -10,7 +11,7 @@ import { nameNodes, nameReach, nameSegment } from './names.ts';
 import { findNearPieces } from './near-pieces.ts';
 import { classifyNodes, type NodeJoints } from './node-joints.ts';
 import { type Kept, leaveOutEndPieces } from './overshoot.ts';
-import { type Arcs, type Reaches, toArcs, toReaches } from './reaches.ts';
+import { type Reaches, toReaches } from './reaches.ts';
 import { type Runs, toRuns } from './runs.ts';
 import { type Stops, stopsByNode, toStops } from './stops.ts';
 import { findTrims } from './trimming.ts';

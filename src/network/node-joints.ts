@@ -1,10 +1,10 @@
 import type { Channel } from '../chip/types.ts';
 import { endsAtVertex, pieceAt } from '../geometry/pieces.ts';
 import { crossK, stepK, teeEqualK, teeIntoWideK } from '../physics/joints.ts';
+import { type Arcs, sidesByNode } from './arcs.ts';
 import { type Draft, pointAt } from './draft.ts';
 import { isEqualDuct, isEqualSize } from './equal-ducts.ts';
 import type { JointKind, JointTally } from './joint-types.ts';
-import { type Arcs, sidesByNode } from './reaches.ts';
 
 /**
  * Rule 8, `joints: resolved`, at nodes: which computed case a junction or step is, what it adds to each arm, and what a
