@@ -109,6 +109,8 @@ class Overlaps {
     for (let k = 0; k < pairCount; k++) {
       const i = pairA[k];
       const j = pairB[k];
+      // Where two pieces cross, the network has a node by construction (network/meetings.ts): at nearly all places.
+      if (pairDistance[k] === 0 && !areParallel(pieces, i, j)) continue;
       // The strip of a piece lies within half a width of it, whatever its ends.
       if (pairDistance[k] > pieces.half[i] + pieces.half[j]) continue;
       if (isOneStretch(pieces, i, j) || this.meetWhereNearest(i, j) || this.meetAnywhere(i, j)) continue;
@@ -324,6 +326,14 @@ class Overlaps {
     }
     return false;
   }
+}
+
+function areParallel(pieces: Pieces, i: number, j: number): boolean {
+  const ux = pieces.x2[i] - pieces.x1[i];
+  const uy = pieces.y2[i] - pieces.y1[i];
+  const vx = pieces.x2[j] - pieces.x1[j];
+  const vy = pieces.y2[j] - pieces.y1[j];
+  return Math.abs(ux * vy - uy * vx) <= 1e-9 * pieces.length[i] * pieces.length[j];
 }
 
 /** What the strips of two pieces have in common; null where they only touch, which thin-wall speaks of. */

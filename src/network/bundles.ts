@@ -47,18 +47,24 @@ function linksOf(
   slackMm: number,
 ): Link[] {
   const links: Link[] = [];
-  const link = (a: number, b: number): void => {
-    const dx = ends.x[a] - ends.x[b];
-    if (dx > slackMm || dx < -slackMm) return;
-    if (Math.hypot(dx, ends.y[a] - ends.y[b]) > slackMm) return;
-    if (ends.state[a] === END_FREE && ends.state[b] === END_FREE) links.push([a, b]);
-  };
+  const { x, y, state } = ends;
   for (let k = 0; k < pairCount; k++) {
     if (pairDistance[k] > slackMm) continue;
-    const [aFrom, aTo] = [firstEnd(pieces, pairA[k]), lastEnd(pieces, pairA[k])];
+    const aFrom = firstEnd(pieces, pairA[k]);
+    const aTo = lastEnd(pieces, pairA[k]);
     if (aFrom > aTo) continue;
-    const [bFrom, bTo] = [firstEnd(pieces, pairB[k]), lastEnd(pieces, pairB[k])];
-    for (let a = aFrom; a <= aTo; a++) for (let b = bFrom; b <= bTo; b++) link(a, b);
+    const bFrom = firstEnd(pieces, pairB[k]);
+    const bTo = lastEnd(pieces, pairB[k]);
+    for (let a = aFrom; a <= aTo; a++) {
+      for (let b = bFrom; b <= bTo; b++) {
+        const dx = x[a] - x[b];
+        const dy = y[a] - y[b];
+        // Nearly all are far apart: that is seen without a root.
+        if (dx > slackMm || dx < -slackMm || dy > slackMm || dy < -slackMm) continue;
+        const isLink = state[a] === END_FREE && state[b] === END_FREE && Math.hypot(dx, dy) <= slackMm;
+        if (isLink) links.push([a, b]);
+      }
+    }
   }
   return links;
 }

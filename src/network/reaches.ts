@@ -143,6 +143,10 @@ function chainOf(next: Int32Array, a: number): number[] {
   return backward.reverse().concat(forward);
 }
 
+/** Scratch points of addSegments, which is asked for every arc of the chip. */
+const FROM = { x: 0, y: 0 };
+const TO = { x: 0, y: 0 };
+
 /** Adds the straight pieces of one arc to the reach's segments, each with the length that counts. */
 function addSegments(
   draft: Draft,
@@ -158,6 +162,18 @@ function addSegments(
   const { pieces } = draft;
   const c = arcs.centreline[arc];
   const length = pieces.centrelineLength[c];
+  const add = (start: number, stop: number, radius: number): void => {
+    const counted = countedLength(trims, factors, c, start, stop);
+    pointAt(draft, c, reversed ? stop : start, FROM);
+    pointAt(draft, c, reversed ? start : stop, TO);
+    addSegment(segments, reach, firstSegment, FROM, TO, counted, radius);
+  };
+  // Most arcs lie on one piece.
+  const piece = pieceAt(pieces, c, arcs.from[arc]);
+  if (arcs.from[arc] >= pieces.start[piece] && arcs.to[arc] <= pieces.start[piece] + pieces.length[piece]) {
+    add(arcs.from[arc], arcs.to[arc], pieces.bendRadius[piece]);
+    return;
+  }
   const cuts = [arcs.from[arc]];
   const radii: number[] = [];
   const end = arcs.to[arc];
@@ -173,15 +189,10 @@ function addSegments(
   }
   if (cuts[cuts.length - 1] < end) addCut(end, 0);
 
-  const from = { x: 0, y: 0 };
-  const to = { x: 0, y: 0 };
   const n = radii.length;
   for (let k = 0; k < n; k++) {
     const i = reversed ? n - 1 - k : k;
-    const counted = countedLength(trims, factors, c, cuts[i], cuts[i + 1]);
-    pointAt(draft, c, reversed ? cuts[i + 1] : cuts[i], from);
-    pointAt(draft, c, reversed ? cuts[i] : cuts[i + 1], to);
-    addSegment(segments, reach, firstSegment, from, to, counted, radii[i]);
+    add(cuts[i], cuts[i + 1], radii[i]);
   }
 
   function addCut(position: number, radius: number): void {

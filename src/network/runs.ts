@@ -21,7 +21,7 @@ export interface Runs {
 /** Chains reaches through their seams. Cost: linear in the reaches. */
 export function toRuns(draft: Draft, reaches: Reaches): Runs {
   const next = seams(draft, reaches);
-  if (!next.some((side) => side >= 0)) return singleRuns(reaches.count);
+  if (next === null) return singleRuns(reaches.count);
   const first = [0];
   const reach = new Int32Array(reaches.count);
   const reversed = new Uint8Array(reaches.count);
@@ -70,17 +70,20 @@ function startOf(next: Int32Array, r: number): { readonly side: number; readonly
   return { side, isLoop: false };
 }
 
-/** For each side of a reach, the side of the reach that it goes on in through a seam; −1 for none. */
-function seams(draft: Draft, reaches: Reaches): Int32Array {
+/** For each side of a reach, the side of the reach that it goes on in through a seam, −1 for none; null without any seam. */
+function seams(draft: Draft, reaches: Reaches): Int32Array | null {
   const degree = new Int32Array(draft.nodes.size);
-  const sideSum = new Float64Array(draft.nodes.size);
-  const add = (node: number, side: number): void => {
-    degree[node]++;
-    sideSum[node] += side;
-  };
   for (let r = 0; r < reaches.count; r++) {
-    add(reaches.from[r], 2 * r);
-    add(reaches.to[r], 2 * r + 1);
+    degree[reaches.from[r]]++;
+    degree[reaches.to[r]]++;
+  }
+  let isPossible = false;
+  for (let node = draft.portCount; node < degree.length; node++) if (degree[node] === 2) isPossible = true;
+  if (!isPossible) return null;
+  const sideSum = new Float64Array(draft.nodes.size);
+  for (let r = 0; r < reaches.count; r++) {
+    sideSum[reaches.from[r]] += 2 * r;
+    sideSum[reaches.to[r]] += 2 * r + 1;
   }
   const next = new Int32Array(2 * reaches.count).fill(-1);
   const { channels } = draft.chip;
