@@ -144,8 +144,10 @@ function findMiss(context: FindingContext, tip: Tip): NearMiss | null {
     const target = aim.distanceMm > 1e-9 ? { x: aim.x1, y: aim.y1 } : { x: onLine.x2, y: onLine.y2 };
     const pointsAtIt = pointsAt(target.x, target.y);
     const apartMm = 4 * (half + pieces.half[i] + minWallMm);
-    if (!mayMiss(pointsAtIt, () => isNearAlong(context, c, place.s, pieces.centreline[i], t, apartMm)))
-      continue;
+    const isNear = (): boolean => isNearAlong(context, c, place.s, pieces.centreline[i], t, apartMm);
+    if (!mayMiss(pointsAtIt, isNear)) continue;
+    // Where there is no gap and a join is near, fluid passes: whether the right way is the etched area's affair.
+    if (!isAbove(gap.distanceMm, 0) && isNear()) continue;
     if (tip.kind === 'fan' && !recedesFrom((x, y) => distanceToPiece(x, y, i))) continue;
     consider({
       tip,

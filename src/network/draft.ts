@@ -166,3 +166,11 @@ export function pointAt(draft: Draft, c: number, s: number, out: { x: number; y:
   out.x = pieces.x1[i] + t * (pieces.x2[i] - pieces.x1[i]);
   out.y = pieces.y1[i] + t * (pieces.y2[i] - pieces.y1[i]);
 }
+
+/** Whether an end was carried on in its own direction, to within the slack. */
+export function isCarriedStraightOn({ ends, slackMm }: Draft, end: number): boolean {
+  const dx = ends.tipX[end] - ends.x[end];
+  const dy = ends.tipY[end] - ends.y[end];
+  const along = dx * ends.outX[end] + dy * ends.outY[end];
+  return along > 0 && Math.abs(dx * ends.outY[end] - dy * ends.outX[end]) <= slackMm;
+}

@@ -10,7 +10,7 @@ import {
   STRAIGHT,
   type StripEnds,
 } from '../geometry/strip.ts';
-import { type Draft, pointAt } from './draft.ts';
+import { type Draft, isCarriedStraightOn, pointAt } from './draft.ts';
 import type { Kept } from './overshoot.ts';
 
 /**
@@ -39,8 +39,8 @@ export class KeptStrips {
     const end = start + pieces.length[piece];
     const isFirst = piece === pieces.firstPiece[c];
     const isLast = piece === pieces.firstPiece[c + 1] - 1;
-    const growsAtStart = isFirst && from < 0 && this.isStraightOn(2 * c);
-    const growsAtEnd = isLast && to > end && this.isStraightOn(2 * c + 1);
+    const growsAtStart = isFirst && from < 0 && isCarriedStraightOn(this.draft, 2 * c);
+    const growsAtEnd = isLast && to > end && isCarriedStraightOn(this.draft, 2 * c + 1);
     const startMoves = from > start || growsAtStart;
     const endMoves = to < end || growsAtEnd;
     if (pieces.centrelineClosed[c] === 1 || !(startMoves || endMoves)) {
@@ -62,15 +62,6 @@ export class KeptStrips {
         ? roundingAtSeam(pieces, 2 * c + 1, this.ends, slackMm)
         : roundingAtEnd(pieces, piece, this.ends, slackMm, from, to),
     });
-  }
-
-  /** Whether an end was carried on in its own direction, to within the slack. */
-  private isStraightOn(end: number): boolean {
-    const { ends, slackMm } = this.draft;
-    const dx = ends.tipX[end] - ends.x[end];
-    const dy = ends.tipY[end] - ends.y[end];
-    const along = dx * ends.outX[end] + dy * ends.outY[end];
-    return along > 0 && Math.abs(dx * ends.outY[end] - dy * ends.outX[end]) <= slackMm;
   }
 
   /** A curve carried on straight turns a little where it is: its piece and what was carried on are two straight pieces. */

@@ -2,9 +2,19 @@ import { pieceAt } from '../geometry/pieces.ts';
 import { distanceToSegment, nearestParameter } from '../geometry/segment.ts';
 import { isInPieceStrip } from '../geometry/strip.ts';
 import type { Bundles } from './bundles.ts';
-import { type Draft, drawnPosition, END_FREE, END_JOINED, endPiece, endPosition, pointAt } from './draft.ts';
+import {
+  type Draft,
+  drawnPosition,
+  END_FREE,
+  END_JOINED,
+  endPiece,
+  endPosition,
+  isCarriedStraightOn,
+  pointAt,
+} from './draft.ts';
 import { isEqualSize } from './equal-ducts.ts';
 import { type NodeStops, type Stops, stopsByNode } from './stops.ts';
+import { piecesNearExtension } from './strips.ts';
 
 /** The part of each centreline that is kept, by position; and what was left out at each end (2c, 2c + 1), mm. */
 export interface Kept {
@@ -237,7 +247,7 @@ function endAt(draft: Draft, stops: Stops, stop: number): number {
 
 /**
  * Whether a centreline between two positions stays within `within` of the others' and within 15° of them; what
- * one of its ends was carried on by counts with it.
+ * its own end and one of theirs were carried on by counts with it.
  */
 function runsAlong(
   draft: Draft,
@@ -248,46 +258,93 @@ function runsAlong(
   carriedEnd: number,
   within: number,
 ): boolean {
-  const { pieces, near } = draft;
-  const low = Math.max(0, Math.min(s1, s2));
-  const high = Math.min(pieces.centrelineLength[c], Math.max(s1, s2));
-  if (high - low <= draft.slackMm) return false;
-  const at = { x: 0, y: 0 };
+  const { pieces, slackMm } = draft;
+  const low = Math.min(s1, s2);
+  const high = Math.max(s1, s2);
+  const length = pieces.centrelineLength[c];
+  let runs = 0;
+  const isBeside = (a: number, b: number, stretch: Stretch): boolean => {
+    if (b - a <= slackMm) return true;
+    runs += b - a;
+    return [a, (a + b) / 2, b].every((s) => isAlong(draft, c, s, stretch, isOther, carriedEnd, within));
+  };
+  // A short step aside, to the nearest point, joins the two and runs along nothing.
+  if (low < 0 && isCarriedStraightOn(draft, 2 * c)) {
+    if (!isBeside(low, Math.min(0, high), carriedOn(draft, 2 * c))) return false;
+  }
+  if (high > length && isCarriedStraightOn(draft, 2 * c + 1)) {
+    if (!isBeside(Math.max(length, low), high, carriedOn(draft, 2 * c + 1))) return false;
+  }
   for (let i = pieceAt(pieces, c, low); i < pieces.firstPiece[c + 1] && pieces.start[i] < high; i++) {
     const a = Math.max(low, pieces.start[i]);
     const b = Math.min(high, pieces.start[i] + pieces.length[i]);
-    if (b - a <= draft.slackMm) continue;
-    for (const s of [a, (a + b) / 2, b]) {
-      pointAt(draft, c, s, at);
-      let best = Number.POSITIVE_INFINITY;
-      let sine = 1;
-      for (let k = near.firstPair[i]; k < near.firstPair[i + 1]; k++) {
-        const pair = near.pairOf[k];
-        const j = near.pairA[pair] === i ? near.pairB[pair] : near.pairA[pair];
-        if (pieces.centreline[j] === c || !isOther(pieces.centreline[j])) continue;
-        const distance = distanceToSegment(
-          at.x,
-          at.y,
-          pieces.x1[j],
-          pieces.y1[j],
-          pieces.x2[j],
-          pieces.y2[j],
-        );
-        if (distance >= best) continue;
-        best = distance;
-        sine = Math.abs(sineBetween(draft, i, j));
-      }
-      const isAlong = best <= within + draft.slackMm && sine <= MOST_SINE;
-      if (!isAlong && !runsAlongExtension(draft, i, at, carriedEnd, within)) return false;
-    }
+    if (!isBeside(a, b, drawnPiece(draft, i))) return false;
   }
-  return true;
+  return runs > slackMm;
+}
+
+/** A straight piece of a centreline, drawn or carried on: its direction, and what comes near it. */
+interface Stretch {
+  readonly ux: number;
+  readonly uy: number;
+  readonly near: readonly number[];
+}
+
+function drawnPiece({ pieces, near }: Draft, i: number): Stretch {
+  const found: number[] = [];
+  for (let k = near.firstPair[i]; k < near.firstPair[i + 1]; k++) {
+    const pair = near.pairOf[k];
+    found.push(near.pairA[pair] === i ? near.pairB[pair] : near.pairA[pair]);
+  }
+  return {
+    ux: (pieces.x2[i] - pieces.x1[i]) / pieces.length[i],
+    uy: (pieces.y2[i] - pieces.y1[i]) / pieces.length[i],
+    near: found,
+  };
+}
+
+/** What an end was carried on by. */
+function carriedOn(draft: Draft, end: number): Stretch {
+  const { ends, pieces } = draft;
+  return {
+    ux: (ends.tipX[end] - ends.x[end]) / ends.extension[end],
+    uy: (ends.tipY[end] - ends.y[end]) / ends.extension[end],
+    // What the end lies in, and that channel's pieces that it was carried on to.
+    near: piecesNearExtension(draft, end, pieces.half[endPiece(pieces, end)]),
+  };
+}
+
+function isAlong(
+  draft: Draft,
+  c: number,
+  s: number,
+  stretch: Stretch,
+  isOther: (line: number) => boolean,
+  carriedEnd: number,
+  within: number,
+): boolean {
+  const { pieces } = draft;
+  const at = { x: 0, y: 0 };
+  pointAt(draft, c, s, at);
+  let best = Number.POSITIVE_INFINITY;
+  let sine = 1;
+  for (const j of stretch.near) {
+    if (pieces.centreline[j] === c || !isOther(pieces.centreline[j])) continue;
+    const distance = distanceToSegment(at.x, at.y, pieces.x1[j], pieces.y1[j], pieces.x2[j], pieces.y2[j]);
+    if (distance >= best) continue;
+    best = distance;
+    const vx = pieces.x2[j] - pieces.x1[j];
+    const vy = pieces.y2[j] - pieces.y1[j];
+    sine = Math.abs((stretch.ux * vy - stretch.uy * vx) / pieces.length[j]);
+  }
+  if (best <= within + draft.slackMm && sine <= MOST_SINE) return true;
+  return runsAlongExtension(draft, stretch, at, carriedEnd, within);
 }
 
 /** The same beside what an end was carried on by. */
 function runsAlongExtension(
-  { pieces, ends, slackMm }: Draft,
-  piece: number,
+  { ends, slackMm }: Draft,
+  { ux, uy }: Stretch,
   at: { readonly x: number; readonly y: number },
   end: number,
   within: number,
@@ -295,15 +352,7 @@ function runsAlongExtension(
   if (end < 0 || ends.extension[end] <= slackMm) return false;
   const vx = ends.tipX[end] - ends.x[end];
   const vy = ends.tipY[end] - ends.y[end];
-  const ux = pieces.x2[piece] - pieces.x1[piece];
-  const uy = pieces.y2[piece] - pieces.y1[piece];
-  const sine = Math.abs((ux * vy - uy * vx) / (pieces.length[piece] * ends.extension[end]));
+  const sine = Math.abs((ux * vy - uy * vx) / ends.extension[end]);
   const distance = distanceToSegment(at.x, at.y, ends.x[end], ends.y[end], ends.tipX[end], ends.tipY[end]);
   return distance <= within + slackMm && sine <= MOST_SINE;
-}
-
-function sineBetween(draft: Draft, i: number, j: number): number {
-  const { pieces: p } = draft;
-  const cross = (p.x2[i] - p.x1[i]) * (p.y2[j] - p.y1[j]) - (p.y2[i] - p.y1[i]) * (p.x2[j] - p.x1[j]);
-  return cross / (p.length[i] * p.length[j]);
 }

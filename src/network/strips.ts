@@ -162,14 +162,15 @@ function piecesNear(draft: Draft, piece: number): number[] {
   return found;
 }
 
-function piecesNearExtension(draft: Draft, end: number): number[] {
+/** The pieces of an end's plane that come within a distance of what it was carried on by, box by box. */
+export function piecesNearExtension(draft: Draft, end: number, withinMm = 0): number[] {
   const { near, ends } = draft;
   return (
     near.index?.search(
-      Math.min(ends.x[end], ends.tipX[end]),
-      Math.min(ends.y[end], ends.tipY[end]),
-      Math.max(ends.x[end], ends.tipX[end]),
-      Math.max(ends.y[end], ends.tipY[end]),
+      Math.min(ends.x[end], ends.tipX[end]) - withinMm,
+      Math.min(ends.y[end], ends.tipY[end]) - withinMm,
+      Math.max(ends.x[end], ends.tipX[end]) + withinMm,
+      Math.max(ends.y[end], ends.tipY[end]) + withinMm,
       (i) =>
         draft.pieces.plane[i] ===
         draft.chip.channels[draft.pieces.channel[draft.pieces.firstPiece[end >> 1]]].plane,
