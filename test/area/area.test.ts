@@ -5,7 +5,7 @@ import { randomDrawing } from './drawings.ts';
 import { etchedFaults } from './etched.ts';
 
 /** Drawings with more straight pieces than this, demos excepted, are left to `npm run fuzz`: polygons of curves take their time. */
-const MOST_PIECES = 60;
+const MOST_PIECES = 30;
 
 /** So many drawings from the seeds here; `npm run fuzz` goes on from there. */
 const SEEDS = 40;
