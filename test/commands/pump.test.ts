@@ -258,6 +258,8 @@ describe('rillcheck pump', () => {
     const wrong = await rillcheck('pump', 'chip.svg', '--case', 'sead');
     expect(wrong).toMatchObject({ code: 2, out: '' });
     expect(wrong.err).toContain('there is no case "sead"; did you mean "seed"?');
+    const far = await rillcheck('pump', 'chip.svg', '--case', 'incubation');
+    expect(far.err).toMatch(/there is no case "incubation"; its cases are \w/);
   });
 
   it('ends 2 with one line where there is nothing to find', async () => {
