@@ -1,5 +1,5 @@
 import type { Chip } from '../../chip/types.ts';
-import { listText } from '../../findings/words.ts';
+import { listText, unreadText } from '../../findings/words.ts';
 import {
   formatBound,
   formatMm,
@@ -341,5 +341,5 @@ function ignoredText({ ignored }: Chip): string {
   const kinds = Object.entries(ignored).filter(([, count]) => count > 0);
   return kinds.length === 0
     ? 'nothing: all that is drawn was read'
-    : kinds.map(([kind, count]) => `${count} ${kind}`).join(', ');
+    : kinds.map(([kind, count]) => unreadText(kind, count)).join(', ');
 }
