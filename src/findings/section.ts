@@ -121,6 +121,9 @@ function perChannel(
 /** Rise of the roof over the depth above which flow and shear are off by more than a reader would expect. */
 const RISE_SHARE = 0.05;
 
+/** Below this no width is proposed where nobody gave a least one. */
+const LEAST_WIDTH_MM = 0.005;
+
 /** One finding per channel, at the reach whose roof moves most. */
 function softWalls(context: FindingContext): RuleOutcome {
   const { chip, network, flow } = context;
@@ -153,10 +156,21 @@ function softWalls(context: FindingContext): RuleOutcome {
       factor === Infinity
         ? 'it comes down to the floor and the duct closes'
         : `the resistance is about ${formatNumber(Math.abs(factor - 1) * 100, 2)} % ${riseM > 0 ? 'lower' : 'higher'} than computed, and flow and wall shear are off with it`;
+    const narrowMm = (channel.drawnWidthMm * RISE_SHARE) / share;
     const leastDepthM = Math.abs(riseM) / RISE_SHARE;
+    const { minWidthM, maxDepthToWidth } = chip.limits;
+    // Advice that another rule would hold, or that nobody could make, is none.
+    const ways = [
+      ...(narrowMm >= Math.max(LEAST_WIDTH_MM, 1e3 * (minWidthM?.value ?? 0))
+        ? [`narrow it to ${sizeAtMostText(narrowMm)}`]
+        : []),
+      ...(leastDepthM * 1e3 <= (maxDepthToWidth?.value ?? 1) * channel.ductWidthMm
+        ? [`etch it ${leastText(leastDepthM * 1e3)} deep`]
+        : []),
+    ];
     return toFinding('soft-walls', 'caution', {
       message: `the roof of ${name} ${riseM > 0 ? 'rises' : 'sinks'} by ${show.text('cross_length', Math.abs(riseM))} on average, ${formatShare(share)} of its depth, at ${show.text('pressure', pressurePa)} and a stiffness of ${limitText(show.text('pressure', stiffness.value), stiffness)}: ${effect}${othersText(context, worst)}`,
-      fix: `keep ${name} below ${show.text('pressure', (Math.abs(pressurePa) * RISE_SHARE) / share)}, narrow it to ${sizeAtMostText((channel.drawnWidthMm * RISE_SHARE) / share)}, etch it ${leastText(leastDepthM * 1e3)} deep, or make the chip of something stiffer`,
+      fix: `keep ${name} below ${show.text('pressure', (Math.abs(pressurePa) * RISE_SHARE) / share)}${ways.map((way) => `, ${way}`).join('')}, or make the chip of something stiffer`,
       at: middleOfReach(network, worst.reach),
       names: reachNames(context, worst),
       measure: { value: share, limit: RISE_SHARE, unit: '' },
