@@ -3,7 +3,7 @@ import { meanRoofRise, risenResistanceFactor } from '../physics/roof.ts';
 import { formatNumber, formatShare } from '../runsheet/shown.ts';
 import { acrossMark, middleOfChannel } from './centrelines.ts';
 import type { FindingContext } from './context.ts';
-import { freeSpanMm } from './free-span.ts';
+import { type FreeSpan, freeSpan } from './free-span.ts';
 import { middleOfReach, othersText, reachesOf, reachNames, worstReach } from './reaches.ts';
 import {
   found,
@@ -24,6 +24,7 @@ import {
   limitText,
   listText,
   mostText,
+  placeText,
   showFor,
   sizeAtMostText,
 } from './words.ts';
@@ -61,19 +62,16 @@ export const sectionRules: readonly Rule[] = [
         if (!isAbove(ductWidthMm / depthMm, limit.value)) return null;
         const pillars = chip.obstacles.filter(({ channel: its, inside }) => its === c && inside);
         // An isotropic etch widens the way between pillars as it widens the channel.
-        const spanMm =
-          pillars.length === 0
-            ? ductWidthMm
-            : ductWidthMm - channel.drawnWidthMm + freeSpanMm(channel, pillars, chip.ports);
+        const free = pillars.length === 0 ? null : freeSpan(channel, pillars, chip.ports);
+        const spanMm = free === null ? ductWidthMm : ductWidthMm - channel.drawnWidthMm + free.spanMm;
         const ratio = spanMm / depthMm;
         if (!isAbove(ratio, limit.value)) return null;
         const severity = isAbove(ratio, 2 * limit.value) ? 'blocker' : 'caution';
+        // The place of the widest room is known to its size, not to a point: it is told, and the channel's middle marked.
         const at = middleOfChannel(channel);
         const drawnAtMost = channel.drawnWidthMm - (ductWidthMm - limit.value * depthMm);
         const between =
-          pillars.length === 0
-            ? ''
-            : ` between its ${countText(pillars.length, 'pillar')}, where it is widest,`;
+          free === null ? '' : ` between its ${countText(pillars.length, 'pillar')}${widestText(free)}`;
         const closer = pillars.length === 0 ? '' : 'set its pillars closer, ';
         const narrower = drawnAtMost > 0 ? `narrow ${name} to ${sizeAtMostText(drawnAtMost)}, ` : '';
         return toFinding('roof-span', severity, {
@@ -110,6 +108,11 @@ export const sectionRules: readonly Rule[] = [
   { names: ['soft-walls'], run: softWalls },
   { names: ['isotropic-etch'], run: (context) => found(isotropicEtch(context)) },
 ];
+
+function widestText({ xMm, yMm }: FreeSpan): string {
+  const near = (mm: number): number => Math.round(mm * 10) / 10;
+  return Number.isNaN(xMm) ? '' : `, where it is widest, near ${placeText(near(xMm), near(yMm))},`;
+}
 
 function perChannel(
   channels: readonly Channel[],
