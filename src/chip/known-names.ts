@@ -71,6 +71,8 @@ export function refuseUnknownNames(
   for (const name of keys.ports.unmatched())
     unknown(sheet, ['ports', name], 'port', name, names.ports, names);
   for (const name of keys.ports.overruled()) {
+    // In a case the names that it writes may all go before a pattern of the sheet, which then speaks for the other cases.
+    if (sheet.changedPorts.some((changed) => changed !== name && matches(name, changed))) continue;
     const path = ['ports', name];
     refuse(
       sheet,

@@ -25,11 +25,9 @@ export function casesOf(sheet: RunSheet | null, wanted: string | undefined): rea
     const found = cases.find(({ name }) => name === wanted);
     if (found !== undefined) return [found];
     const names = cases.map(({ name }) => name);
-    const near = nearest(wanted, names) ?? names[0];
-    const hint =
-      near === undefined
-        ? 'the run sheet has no cases'
-        : `did you mean ${quote(near)}? Its cases are ${names.join(', ')}`;
+    const near = nearest(wanted, names);
+    const meant = near === null ? 'its cases are' : `did you mean ${quote(near)}? Its cases are`;
+    const hint = names.length === 0 ? 'the run sheet has no cases' : `${meant} ${names.join(', ')}`;
     throw new InputError('--case', `there is no case ${quote(wanted)}; ${hint}`);
   }
   return cases.length === 0 ? [{ name: null, sheet }] : cases;

@@ -4,7 +4,7 @@ import { waterDensity, waterViscosity } from '../physics/fluid.ts';
 import { type SectionFluid, sectionText } from '../report/section-text.ts';
 import { parseQuantity, type Quantity, QuantityError } from '../runsheet/units.ts';
 import { computeSection, type Given, type SectionInput, type SectionState } from '../section/section.ts';
-import { VERSION } from '../version.ts';
+import { RESULT_VERSION, VERSION } from '../version.ts';
 import type { Io } from './io.ts';
 
 /** What commander hands over: texts with units. */
@@ -140,7 +140,7 @@ function computed(input: SectionInput): SectionState {
 function sectionJson(input: SectionInput, state: SectionState, fluid: SectionFluid): string {
   const { temperatureK } = fluid;
   const document = {
-    tool: { name: 'rillcheck', version: VERSION, result_version: 1 },
+    tool: { name: 'rillcheck', version: VERSION, result_version: RESULT_VERSION },
     fluid: {
       name: fluid.name,
       temperature_c: temperatureK === null ? null : Number((temperatureK - 273.15).toFixed(9)),

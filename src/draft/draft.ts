@@ -27,20 +27,21 @@ const MOST_BYTES = 900_000;
  */
 export function draftRunSheet({ layout, file, tool }: DraftInput): string {
   const chip = assembleChip({ layout, sheet: null, file, layoutSha256: '0'.repeat(64) });
+  const groupsOf = groupsByOrdinal(layout);
   const fields = pillarFields(chip);
-  const layers = layerLines(chip, layout);
+  const layers = layerLines(chip, groupsOf);
   const whole = [
-    ...head(chip, layout, tool, fields),
+    ...head(chip, layout, tool, groupsOf, fields),
     ...layers,
-    ...portLines(chip, layout, fields),
-    ...channelLines(chip, layout),
+    ...portLines(chip, groupsOf, fields),
+    ...channelLines(chip, groupsOf),
     ...rest(chip, fields),
   ].join('\n');
   if (Buffer.byteLength(whole) <= MOST_BYTES) return `${whole}\n`;
   const short = [
-    ...head(chip, layout, tool, fields),
+    ...head(chip, layout, tool, groupsOf, fields),
     ...layers,
-    ...portLines(chip, layout, fields),
+    ...portLines(chip, groupsOf, fields),
     'channels: # the drawing has too many to list here; give windows to those that need them, * matches any run of characters',
     ...WINDOW_EXAMPLE,
     ...rest(chip, fields),
@@ -48,7 +49,22 @@ export function draftRunSheet({ layout, file, tool }: DraftInput): string {
   return `${short}\n`;
 }
 
-function head(chip: Chip, layout: Layout, tool: string, fields: readonly PillarField[]): string[] {
+/** Named groups round the drawn thing of that ordinal, outermost first. */
+type GroupsOf = (ordinal: number) => readonly string[];
+
+/** By ordinal, not by place in the list: shapes that draw nothing have an ordinal too, and no item. */
+function groupsByOrdinal({ items }: Layout): GroupsOf {
+  const byOrdinal = new Map(items.map(({ ordinal, groups }) => [ordinal, groups]));
+  return (ordinal) => byOrdinal.get(ordinal) ?? [];
+}
+
+function head(
+  chip: Chip,
+  layout: Layout,
+  tool: string,
+  groupsOf: GroupsOf,
+  fields: readonly PillarField[],
+): string[] {
   const { edge } = chip;
   const unit = layout.unitStated
     ? `# unit: 1 mm # size of one unit of the drawing; not needed, the drawing says it (${commentText(layout.unitReason)})`
@@ -73,7 +89,7 @@ function head(chip: Chip, layout: Layout, tool: string, fields: readonly PillarF
     edge === null
       ? 'outline: # fill in: name of the shape that is the chip edge; without one the edge rules are not run'
       : `# outline: ${edgeName(edge.name)} # the chip edge found; when given here, only what lies inside it is read`,
-    ...portsLayerLine(chip, layout, fields),
+    ...portsLayerLine(chip, groupsOf, fields),
     '# ignore: ["dim-*"] # names of elements or layers that are not read; * matches any run of characters',
     '# join_within: 1 um # slack of every "on" and "inside" when channels are joined',
     '# joints: resolved # corners and junctions add resistance of their own; or centreline: they do not',
@@ -89,18 +105,18 @@ function edgeName(name: string): string {
   return isDraftable(name) ? keyText(name) : '…';
 }
 
-function portsLayerLine(chip: Chip, layout: Layout, fields: readonly PillarField[]): string[] {
+function portsLayerLine(chip: Chip, groupsOf: GroupsOf, fields: readonly PillarField[]): string[] {
   const pillars = new Set(fields.flatMap((field) => field.pillars));
   const names = new Set<string>();
   for (const port of chip.ports) {
-    if (!pillars.has(port)) names.add(layout.items[port.ordinal].groups.at(-1) ?? '');
+    if (!pillars.has(port)) names.add(groupsOf(port.ordinal).at(-1) ?? '');
   }
   const [only] = names;
   if (names.size !== 1 || only === undefined || only === '' || !isDraftable(only)) {
     return ['# ports_layer: holes # only circles of this layer are ports'];
   }
   const isApart = [...pillars].every(({ ordinal }) =>
-    layout.items[ordinal].groups.every((group) => layerKey(group) !== layerKey(only)),
+    groupsOf(ordinal).every((group) => layerKey(group) !== layerKey(only)),
   );
   if (pillars.size > 0 && isApart) {
     const where = fields.map(({ channel }) => commentText(channel.name)).join(', ');
@@ -121,11 +137,11 @@ interface DrawnLayer {
   withDepth: number;
 }
 
-function layerLines(chip: Chip, layout: Layout): string[] {
+function layerLines(chip: Chip, groupsOf: GroupsOf): string[] {
   const layers = new Map<string, DrawnLayer>();
   let loose = 0;
   for (const { ordinal, depthOrigin } of chip.channels) {
-    const { groups } = layout.items[ordinal];
+    const groups = groupsOf(ordinal);
     if (groups.length === 0) {
       loose++;
       continue;
@@ -142,7 +158,7 @@ function layerLines(chip: Chip, layout: Layout): string[] {
     loose > 0 ? `; ${counted(loose, 'channel')} ${loose === 1 ? 'lies' : 'lie'} in no layer` : '';
   const keys = [...layers.keys()];
   const layerOf = (channel: number): number => {
-    const { groups } = layout.items[chip.channels[channel].ordinal];
+    const groups = groupsOf(chip.channels[channel].ordinal);
     return groups.length === 0 ? NO_LAYER : keys.indexOf(layerKey(groups[0]));
   };
   const drawnName = (layer: number): string => layers.get(keys[layer])?.name ?? '';
@@ -175,7 +191,7 @@ function layerLine({ name, inner, channels, withDepth }: DrawnLayer, plane: stri
     : `  ${keyText(name)}: { plane: ${plane} } # plane assumed; fill in: { depth: 50 um, plane: ${plane} }; ${about}`;
 }
 
-function portLines(chip: Chip, layout: Layout, fields: readonly PillarField[]): string[] {
+function portLines(chip: Chip, groupsOf: GroupsOf, fields: readonly PillarField[]): string[] {
   const pillars = new Set(fields.flatMap((field) => field.pillars));
   const ports = chip.ports.filter((port) => !pillars.has(port));
   const lines = ports.map(({ name, drawnName, xMm, yMm, radiusMm }) => {
@@ -190,14 +206,14 @@ function portLines(chip: Chip, layout: Layout, fields: readonly PillarField[]): 
     'ports: # { pressure: 12 kPa }, { flow: 2 uL/min } (into the chip is positive), { head: 40 mm }, open or sealed; * matches any run of characters',
     '  # with tubing: { pressure: 12 kPa, tubing: { bore: 0.5 mm, length: 300 mm }, expect: in }; several pieces: tubing: [{ … }, { …, temperature: 22 degC }]',
     ...lines,
-    ...fields.map((field) => pillarLine(field, layout)),
+    ...fields.map((field) => pillarLine(field, groupsOf)),
     '',
   ];
 }
 
-function pillarLine({ channel, pillars }: PillarField, layout: Layout): string {
+function pillarLine({ channel, pillars }: PillarField, groupsOf: GroupsOf): string {
   const sizes = [...new Set(pillars.map(({ radiusMm }) => formatMm(2 * radiusMm)))];
-  const layers = [...new Set(pillars.flatMap(({ ordinal }) => layout.items[ordinal].groups.at(-1) ?? []))];
+  const layers = [...new Set(pillars.flatMap(({ ordinal }) => groupsOf(ordinal).at(-1) ?? []))];
   const inLayers = layers.length === 0 ? '' : ` (in ${layers.slice(0, 4).map(commentText).join(', ')})`;
   const named = pillars.flatMap(({ drawnName }) => drawnName ?? []);
   const names =
@@ -212,7 +228,7 @@ const WINDOW_EXAMPLE = [
   '#  "branch-*": { even: 5 % } # the flows of all channels of this name within ±5 % of their mean',
 ];
 
-function channelLines(chip: Chip, layout: Layout): string[] {
+function channelLines(chip: Chip, groupsOf: GroupsOf): string[] {
   const named = new Map<string, Channel[]>();
   let unnamed = 0;
   for (const channel of chip.channels) {
@@ -221,7 +237,7 @@ function channelLines(chip: Chip, layout: Layout): string[] {
   }
   const lines = [...named].map(([name, channels]) => {
     const widths = [...new Set(channels.map(({ drawnWidthMm }) => formatMm(drawnWidthMm)))];
-    const layers = [...new Set(channels.flatMap(({ ordinal }) => layout.items[ordinal].groups[0] ?? []))];
+    const layers = [...new Set(channels.flatMap(({ ordinal }) => groupsOf(ordinal)[0] ?? []))];
     const about = [
       channels.length === 1 ? '' : `${channels.length} of this name`,
       `${widths.slice(0, 4).join(', ')} mm wide`,

@@ -15,10 +15,22 @@ export function deadPorts(context: FindingContext): Finding[] {
     .map((dead) => toDeadPort(context, dead));
 }
 
-/** The gap nearest to each dead part; null where there is nothing else. */
+/** The gap nearest to each dead part; null where there is nothing else, or nothing that closing a gap could lead to. */
 export const gapOfDeadPart: (context: FindingContext) => ReadonlyMap<number, Gap | null> = oncePerContext(
-  (context) => new Map(deadParts(context).map(({ part }) => [part, nearestGap(context, part)])),
+  (context) =>
+    new Map(
+      deadParts(context).map(({ part }) => [
+        part,
+        hasElsewhere(context, part) ? nearestGap(context, part) : null,
+      ]),
+    ),
 );
+
+/** Whether another part has a port that fluid may pass; one without a condition may yet be given one. */
+function hasElsewhere({ chip, flow }: FindingContext, part: number): boolean {
+  const passes = (port: number): boolean => chip.ports[port].condition.kind !== 'sealed';
+  return flow?.parts.some(({ ports }, other) => other !== part && ports.some(passes)) ?? false;
+}
 
 function toDeadPort(context: FindingContext, dead: DeadPart): Finding {
   const { ports } = context.chip;
@@ -26,16 +38,20 @@ function toDeadPort(context: FindingContext, dead: DeadPart): Finding {
   const names = dead.ports.map((port) => ports[port].name);
   const gap = gapOfDeadPart(context).get(dead.part) ?? null;
   return toFinding('dead-port', dead.severity, {
-    message: `${whatIsDead(context, dead)}; ${gap === null ? 'it has no other part near it' : `the nearest gap is ${gapText(gap)}`}`,
+    message: `${whatIsDead(context, dead)}; ${gap === null ? noGapText(context, dead) : `the nearest gap is ${gapText(gap)}`}`,
     fix: `${wayOut(context, dead, gap)}; if it is meant to stand still, accept dead-port at ${keyText(first.name)}`,
-    at: gap?.isAtTip === true ? gap : { xMm: first.xMm, yMm: first.yMm },
+    at: gap !== null && gap.stopsShort !== null ? gap : { xMm: first.xMm, yMm: first.yMm },
     names: [...new Set([...names, ...(gap === null ? [] : [gap.from, gap.to])])],
-    ...(gap?.isAtTip === true ? { mark: toMark(gap) } : {}),
+    ...(gap !== null && gap.stopsShort !== null ? { mark: toMark(gap) } : {}),
   });
 }
 
 function toMark({ mark: [x1Mm, y1Mm, x2Mm, y2Mm] }: Gap): NonNullable<Finding['mark']> {
   return { x1Mm, y1Mm, x2Mm, y2Mm };
+}
+
+function noGapText(context: FindingContext, { part }: DeadPart): string {
+  return hasElsewhere(context, part) ? 'it has no other part near it' : 'the chip has no other such port';
 }
 
 /** "125 µm between branch and feed at (12, 5 mm)" */
@@ -63,7 +79,8 @@ function whatIsDead(context: FindingContext, { ports, kind }: DeadPart): string 
 }
 
 function wayOut({ chip, flow }: FindingContext, { part, ports }: DeadPart, gap: Gap | null): string {
-  if (gap?.isAtTip === true) return `close the gap: carry ${gap.from} on to ${gap.to} there`;
+  const short = gap?.stopsShort ?? null;
+  if (short !== null) return `close the gap: carry ${short.channel} on to ${short.of} there`;
   const { name } = chip.ports[ports[0]];
   const idle = flow?.parts[part].ports.find((port) => !ports.includes(port));
   const other = idle === undefined ? null : chip.ports[idle];

@@ -22,25 +22,39 @@ const PRECISION = 1e-3;
 /** Cells looked at before the bound itself is given: safe, for it can only be too wide. */
 const MOST_CELLS = 300_000;
 
-/** mm, at most the channel's width. */
-export function freeSpanMm(
+/** The widest span and the middle of its circle. */
+export interface FreeSpan {
+  /** At most the channel's width. */
+  readonly spanMm: number;
+  readonly xMm: number;
+  readonly yMm: number;
+}
+
+export function freeSpan(
   { centrelines, drawnWidthMm }: Channel,
   pillars: readonly Obstacle[],
   wells: readonly Circle[] = [],
-): number {
+): FreeSpan {
   const half = drawnWidthMm / 2;
   const pillarIndex = indexPillars(pillars, wells);
   const strip = indexStrip(centrelines);
-  /** Room at the point, or at the one nearest to it that is not beyond an open end. */
+  let best = 0;
+  let [xMm, yMm] = [Number.NaN, Number.NaN];
+  /** Room at the point, or at the one nearest to it that is not beyond an open end. Keeps the best. */
   const roomAt = (x: number, y: number): number => {
     // A first cell reaches 2√2 halves of the width from its middle.
     const nearest = strip.nearest(x, y, 4 * half);
     if (nearest === null) return -Infinity;
     const toWall = half - nearest.distance;
-    return toWall <= 0 ? toWall : Math.min(toWall, pillarIndex.distance(nearest.x, nearest.y, toWall));
+    if (toWall <= 0) return toWall;
+    const room = Math.min(toWall, pillarIndex.distance(nearest.x, nearest.y, toWall));
+    if (room > best) {
+      best = room;
+      [xMm, yMm] = [nearest.x, nearest.y];
+    }
+    return room;
   };
   const heap = new Cells();
-  let best = 0;
   for (const { points } of centrelines) {
     // Cells as wide as the channel along the centreline hold every point within half of it.
     for (let i = 0; i + 3 < points.length; i += 2) {
@@ -56,16 +70,15 @@ export function freeSpanMm(
   let looked = 0;
   for (let cell = heap.pop(); cell !== null; cell = heap.pop()) {
     if (cell.bound <= best + (PRECISION * drawnWidthMm) / 2) break;
-    if (++looked > MOST_CELLS) return Math.min(drawnWidthMm, 2 * cell.bound);
+    if (++looked > MOST_CELLS) return { spanMm: Math.min(drawnWidthMm, 2 * cell.bound), xMm, yMm };
     const quarter = cell.half / 2;
     for (const dx of [-quarter, quarter])
       for (const dy of [-quarter, quarter]) add(cell.x + dx, cell.y + dy, quarter);
   }
-  return Math.min(drawnWidthMm, 2 * best);
+  return { spanMm: Math.min(drawnWidthMm, 2 * best), xMm, yMm };
 
   function add(x: number, y: number, halfSide: number): void {
     const room = roomAt(x, y);
-    best = Math.max(best, room);
     const bound = Math.min(half, room + halfSide * Math.SQRT2);
     if (bound > best + (PRECISION * drawnWidthMm) / 2) heap.push({ x, y, half: halfSide, bound });
   }

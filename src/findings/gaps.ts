@@ -16,8 +16,8 @@ export interface Gap {
   readonly xMm: number;
   readonly yMm: number;
   readonly mark: readonly [number, number, number, number];
-  /** An end stands at the gap: it is there that a channel stops short. */
-  readonly isAtTip: boolean;
+  /** The channel whose end stands at the gap, and what it stops short of; null where no end does. */
+  readonly stopsShort: { readonly channel: string; readonly of: string } | null;
 }
 
 /** A gap between two parts, seen from the first. */
@@ -26,7 +26,7 @@ interface PartGap extends Closest {
   readonly other: number;
   readonly from: string;
   readonly to: string;
-  /** The tip that stands there, if one does. */
+  /** The tip that stands there, if one does: an end of `from`. */
   readonly tip: Tip | null;
 }
 
@@ -61,7 +61,7 @@ function toGap(gap: PartGap, part: number): Gap {
     xMm: tip?.x ?? (x1 + x2) / 2,
     yMm: tip?.y ?? (y1 + y2) / 2,
     mark: [x1, y1, x2, y2],
-    isAtTip: tip !== null,
+    stopsShort: tip === null ? null : { channel: gap.from, of: gap.to },
   };
 }
 

@@ -86,10 +86,10 @@ function findingFor(
   if (excess === undefined) return null;
   const { name, xMm, yMm } = context.chip.ports[asked.port];
   const { target } = asked;
-  const why = target === null ? '' : ` to reach ${wantedText(show, target)}`;
+  const why = target === null ? '' : `to reach ${wantedText(show, target)}, `;
   const others = rest.map(({ text }) => `, and ${text}`).join('');
   return toFinding('pump-limit', severity, {
-    message: `the pump at ${name} would have to ${excess.text}${others}${why}`,
+    message: `${why}the pump at ${name} would have to ${excess.text}${others}`,
     fix:
       severity === 'blocker'
         ? fixText(show, name, asked)
@@ -118,7 +118,7 @@ function excesses(show: Show, limits: PumpLimits, { pressurePa, flowM3s }: Asked
     const isGiven = limit.origin === 'run sheet';
     const than = isGiven
       ? `${side} than the ${limitNow} that it can`
-      : `${side} than the ${limitText(limitNow, limit)} that a pump can`;
+      : `${side} than the ${limitText(limitNow, limit)} that a pump usually can`;
     const severity = isGiven ? 'blocker' : 'caution';
     passed.push({ severity, value, limit: limit.value, unit, text: `${does}, ${than}` });
   };
@@ -142,13 +142,16 @@ function fixText(show: Show, name: string, { target }: Asked): string {
   const flow = show.text('flow', lineAt(response, response.flowM3s, reach.nearest));
   const value = targetValue(wanted.measure, lineAt(response, response.observed, reach.nearest));
   const gives = Number.isFinite(value)
-    ? `with which ${wanted.entry.quantity} of ${wanted.name} is ${show.text(wanted.entry.quantity, value)}`
+    ? `with which the ${quantityWords(wanted.entry)} of ${wanted.name} is ${show.text(wanted.entry.quantity, value)}`
     : `with which nothing flows through ${wanted.name}`;
   return `the nearest setting within reach is ${pressure} at the pump (${flow}), ${gives}; else ${wider}`;
 }
 
 function wantedText(show: Show, { wanted, reached }: FoundTarget): string {
-  const { quantity, at } = wanted.entry;
-  const which = quantity === 'wall_shear' ? ` (${at})` : '';
-  return `${show.text(quantity, reached)} of ${quantity}${which} in ${wanted.name}`;
+  return `${show.text(wanted.entry.quantity, reached)} of ${quantityWords(wanted.entry)} in ${wanted.name}`;
+}
+
+/** "mean wall shear", "residence time" */
+function quantityWords({ quantity, at }: FoundTarget['wanted']['entry']): string {
+  return quantity === 'wall_shear' ? `${at} wall shear` : quantity.replaceAll('_', ' ');
 }

@@ -6,7 +6,7 @@ import { middleOfChannel } from './centrelines.ts';
 import type { FindingContext } from './context.ts';
 import { found, type Rule, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
-import { countText, distanceText, keyText, listText } from './words.ts';
+import { countText, distanceText, keyText, listText, unreadText } from './words.ts';
 
 /** What the drawing or the run sheet left open, or said in a way that cannot be read for sure. */
 export const readingRules: readonly Rule[] = [
@@ -147,7 +147,7 @@ function ignoredShapes({ chip, network }: FindingContext): Finding[] {
   const named = leftOut.length === 0 ? '' : ` (${listText(leftOut, 8)})`;
   return [
     toFinding('ignored-shapes', 'note', {
-      message: `${countText(total, 'drawn thing was', 'drawn things were')} not read as part of the chip: ${kinds.map(([kind, count]) => `${count} ${kind}${kind === 'stroke along another' ? named : ''}`).join(', ')}`,
+      message: `${countText(total, 'drawn thing was', 'drawn things were')} not read as part of the chip: ${kinds.map(([kind, count]) => `${unreadText(kind, count)}${kind === 'stroke along another' ? named : ''}`).join(', ')}`,
       fix: 'check on the picture that no channel is missing',
       at: null,
       names: leftOut,

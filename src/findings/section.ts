@@ -3,7 +3,7 @@ import { meanRoofRise, risenResistanceFactor } from '../physics/roof.ts';
 import { formatNumber, formatShare } from '../runsheet/shown.ts';
 import { acrossMark, middleOfChannel } from './centrelines.ts';
 import type { FindingContext } from './context.ts';
-import { freeSpanMm } from './free-span.ts';
+import { type FreeSpan, freeSpan } from './free-span.ts';
 import { middleOfReach, othersText, reachesOf, reachNames, worstReach } from './reaches.ts';
 import {
   found,
@@ -24,6 +24,7 @@ import {
   limitText,
   listText,
   mostText,
+  placeText,
   showFor,
   sizeAtMostText,
 } from './words.ts';
@@ -61,19 +62,16 @@ export const sectionRules: readonly Rule[] = [
         if (!isAbove(ductWidthMm / depthMm, limit.value)) return null;
         const pillars = chip.obstacles.filter(({ channel: its, inside }) => its === c && inside);
         // An isotropic etch widens the way between pillars as it widens the channel.
-        const spanMm =
-          pillars.length === 0
-            ? ductWidthMm
-            : ductWidthMm - channel.drawnWidthMm + freeSpanMm(channel, pillars, chip.ports);
+        const free = pillars.length === 0 ? null : freeSpan(channel, pillars, chip.ports);
+        const spanMm = free === null ? ductWidthMm : ductWidthMm - channel.drawnWidthMm + free.spanMm;
         const ratio = spanMm / depthMm;
         if (!isAbove(ratio, limit.value)) return null;
         const severity = isAbove(ratio, 2 * limit.value) ? 'blocker' : 'caution';
+        // The place of the widest room is known to its size, not to a point: it is told, and the channel's middle marked.
         const at = middleOfChannel(channel);
         const drawnAtMost = channel.drawnWidthMm - (ductWidthMm - limit.value * depthMm);
         const between =
-          pillars.length === 0
-            ? ''
-            : ` between its ${countText(pillars.length, 'pillar')}, where it is widest,`;
+          free === null ? '' : ` between its ${countText(pillars.length, 'pillar')}${widestText(free)}`;
         const closer = pillars.length === 0 ? '' : 'set its pillars closer, ';
         const narrower = drawnAtMost > 0 ? `narrow ${name} to ${sizeAtMostText(drawnAtMost)}, ` : '';
         return toFinding('roof-span', severity, {
@@ -111,6 +109,11 @@ export const sectionRules: readonly Rule[] = [
   { names: ['isotropic-etch'], run: (context) => found(isotropicEtch(context)) },
 ];
 
+function widestText({ xMm, yMm }: FreeSpan): string {
+  const near = (mm: number): number => Math.round(mm * 10) / 10;
+  return Number.isNaN(xMm) ? '' : `, where it is widest, near ${placeText(near(xMm), near(yMm))},`;
+}
+
 function perChannel(
   channels: readonly Channel[],
   look: (channel: Channel, index: number) => Finding | null,
@@ -120,6 +123,9 @@ function perChannel(
 
 /** Rise of the roof over the depth above which flow and shear are off by more than a reader would expect. */
 const RISE_SHARE = 0.05;
+
+/** Below this no width is proposed where nobody gave a least one. */
+const LEAST_WIDTH_MM = 0.005;
 
 /** One finding per channel, at the reach whose roof moves most. */
 function softWalls(context: FindingContext): RuleOutcome {
@@ -153,10 +159,21 @@ function softWalls(context: FindingContext): RuleOutcome {
       factor === Infinity
         ? 'it comes down to the floor and the duct closes'
         : `the resistance is about ${formatNumber(Math.abs(factor - 1) * 100, 2)} % ${riseM > 0 ? 'lower' : 'higher'} than computed, and flow and wall shear are off with it`;
+    const narrowMm = (channel.drawnWidthMm * RISE_SHARE) / share;
     const leastDepthM = Math.abs(riseM) / RISE_SHARE;
+    const { minWidthM, maxDepthToWidth } = chip.limits;
+    // Advice that another rule would hold, or that nobody could make, is none.
+    const ways = [
+      ...(narrowMm >= Math.max(LEAST_WIDTH_MM, 1e3 * (minWidthM?.value ?? 0))
+        ? [`narrow it to ${sizeAtMostText(narrowMm)}`]
+        : []),
+      ...(leastDepthM * 1e3 <= (maxDepthToWidth?.value ?? 1) * channel.ductWidthMm
+        ? [`etch it ${leastText(leastDepthM * 1e3)} deep`]
+        : []),
+    ];
     return toFinding('soft-walls', 'caution', {
       message: `the roof of ${name} ${riseM > 0 ? 'rises' : 'sinks'} by ${show.text('cross_length', Math.abs(riseM))} on average, ${formatShare(share)} of its depth, at ${show.text('pressure', pressurePa)} and a stiffness of ${limitText(show.text('pressure', stiffness.value), stiffness)}: ${effect}${othersText(context, worst)}`,
-      fix: `keep ${name} below ${show.text('pressure', (Math.abs(pressurePa) * RISE_SHARE) / share)}, narrow it to ${sizeAtMostText((channel.drawnWidthMm * RISE_SHARE) / share)}, etch it ${leastText(leastDepthM * 1e3)} deep, or make the chip of something stiffer`,
+      fix: `keep ${name} below ${show.text('pressure', (Math.abs(pressurePa) * RISE_SHARE) / share)}${ways.map((way) => `, ${way}`).join('')}, or make the chip of something stiffer`,
       at: middleOfReach(network, worst.reach),
       names: reachNames(context, worst),
       measure: { value: share, limit: RISE_SHARE, unit: '' },

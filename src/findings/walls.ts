@@ -181,9 +181,13 @@ function apart(one: Channel, two: Channel, needMm: number, more: string): string
   const narrowTwo = two.drawnWidthMm - needMm;
   const narrow =
     narrowOne > 0 && narrowTwo > 0
-      ? `, or narrow them to ${sizeAtMostText(narrowOne)} and ${sizeAtMostText(narrowTwo)}`
+      ? `, or narrow ${narrowedText(sizeAtMostText(narrowOne), sizeAtMostText(narrowTwo))}`
       : '';
   return `move ${one.name} ${more}${moveText(needMm)} away from ${two.name}${narrow}`;
+}
+
+function narrowedText(one: string, two: string): string {
+  return one === two ? `both to ${one}` : `them to ${one} and ${two}`;
 }
 
 function toSlenderFinding({ chip, network }: FindingContext, wall: ThinWall): Finding {

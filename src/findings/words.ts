@@ -60,6 +60,27 @@ export function countText(count: number, one: string, many = `${one}s`): string 
   return `${count} ${count === 1 ? one : many}`;
 }
 
+/** Kinds of drawn things that are not read, where an s at the end is not their plural; names of elements stay as they are. */
+const PLURALS: Readonly<Record<string, string>> = {
+  'chamber or pillar': 'chambers or pillars',
+  'circle of no port size': 'circles of no port size',
+  'dashed stroke': 'dashed strokes',
+  'filled outline': 'filled outlines',
+  'stroke along another': 'strokes along others',
+  'style rule': 'style rules',
+  'style sheet in another file': 'style sheets in other files',
+  'subpath without length': 'subpaths without length',
+  ellipse: 'ellipses',
+  fill: 'fills',
+  image: 'images',
+  text: 'texts',
+};
+
+/** "2 dashed strokes", "1 text", "3 named under ignore" */
+export function unreadText(kind: string, count: number): string {
+  return countText(count, kind, PLURALS[kind] ?? kind);
+}
+
 /** A port with what the run sheet does to it: "feed 12 kPa", "drain open". */
 export function portText(context: FindingContext, port: number): string {
   return `${context.chip.ports[port].name} ${conditionText(context, port)}`;

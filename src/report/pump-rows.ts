@@ -24,6 +24,8 @@ export interface SettingCells {
   /** Into the chip. */
   readonly flow: string;
   readonly inChip: string;
+  /** "within", "OUT OF REACH" …, and what the limits are. */
+  readonly kept: string;
   readonly limits: string;
   /** Rules of blockers that the found settings break here; nothing where they break none. */
   readonly breaks: string;
@@ -59,7 +61,7 @@ export function settingCells(
     pressure: fine(show, 'pressure', response.supplyPressurePa.at),
     flow: fine(show, 'flow', response.flowM3s.at),
     inChip: fine(show, 'pressure', portPressurePa),
-    limits: limitsText(target, foundPumpLimits(chip, wanted.entry.by), show),
+    ...limitsText(target, foundPumpLimits(chip, wanted.entry.by), show),
     breaks: brokenBy(target, name, findings.findings).join(', '),
   };
 }
@@ -157,7 +159,11 @@ function windowText(show: Show, shown: Shown, { min, max }: Window): string {
   return `${formatNumber(min / si, DIGITS)} to ${formatNumber(max / si, DIGITS)} ${text}`;
 }
 
-function limitsText({ reach }: FoundTarget, limits: PumpLimits, show: Show): string {
+function limitsText(
+  { reach }: FoundTarget,
+  limits: PumpLimits,
+  show: Show,
+): Pick<SettingCells, 'kept' | 'limits'> {
   const isGiven = Object.values(limits).some((limit) => limit?.origin === 'run sheet');
   const { minPressurePa, maxPressurePa, maxFlowM3s } = limits;
   // usual limits are told where there are no others, or where it is they that are passed
@@ -169,6 +175,9 @@ function limitsText({ reach }: FoundTarget, limits: PumpLimits, show: Show): str
     ...(min === null && max === null ? [] : [windowText(show, 'pressure', { min, max })]),
     ...(flow === null ? [] : [windowText(show, 'flow', { min: null, max: flow })]),
   ];
-  const usual = isGiven ? '' : ' what is usual';
-  return `${reach.isWithin ? `within${usual}:` : isGiven ? 'OUT OF REACH:' : 'BEYOND WHAT IS USUAL:'} ${parts.join(', ')}`;
+  const beyond = isGiven ? 'OUT OF REACH' : 'BEYOND WHAT IS USUAL';
+  return {
+    kept: reach.isWithin ? (isGiven ? 'within' : 'within what is usual') : beyond,
+    limits: parts.join(', '),
+  };
 }

@@ -1,7 +1,7 @@
-import { cleanText, wrapText } from './plain-text.ts';
-import { rangeText, settingCells, targetCells } from './pump-rows.ts';
+import { cleanText, displayWidth, wrapText } from './plain-text.ts';
+import { rangeText, type SettingCells, settingCells, targetCells } from './pump-rows.ts';
 import type { Report, ReportedCase } from './report.ts';
-import { textTable } from './text-table.ts';
+import { type TextColumn, textTable } from './text-table.ts';
 
 /** What the command pump adds to the summary of a check: each target with what is reached, and each port's settings. Ends with a line end. */
 export function pumpText(report: Report, columns: number): string {
@@ -10,6 +10,36 @@ export function pumpText(report: Report, columns: number): string {
     .filter(({ pump }) => pump !== undefined)
     .map((one) => `${caseLines(one, width).join('\n')}\n\n`)
     .join('');
+}
+
+const SETTING_COLUMNS: readonly TextColumn[] = [
+  { head: 'set', align: 'left' },
+  { head: 'pressure to hold', align: 'right' },
+  { head: 'or flow to give', align: 'right' },
+  { head: 'in the chip', align: 'right' },
+  { head: 'breaks', align: 'left' },
+  { head: 'pump limits', align: 'left' },
+];
+
+/** The table of settings. Where the limits do not fit into it, its cells say whether they are kept, and lines below what they are. */
+function settingLines(settings: readonly SettingCells[], width: number): readonly string[] {
+  const table = (limitsOf: (setting: SettingCells) => string, columns: number): readonly string[] =>
+    textTable(
+      SETTING_COLUMNS,
+      settings.map((setting) => {
+        const { port, pressure, flow, inChip, breaks } = setting;
+        return [cleanText(port), pressure, flow, inChip, breaks, limitsOf(setting)];
+      }),
+      columns,
+    );
+  const whole = table(({ kept, limits }) => `${kept}: ${limits}`, Number.POSITIVE_INFINITY);
+  if (whole.every((line) => displayWidth(line) <= width)) return whole;
+  return [
+    ...table(({ kept }) => kept, width),
+    ...settings.flatMap(({ port, limits }) =>
+      wrapText(cleanText(`pump limits of ${port}: ${limits}`), width),
+    ),
+  ];
 }
 
 function caseLines(one: ReportedCase, width: number): readonly string[] {
@@ -37,19 +67,8 @@ function caseLines(one: ReportedCase, width: number): readonly string[] {
       width,
     ),
     '',
-    ...textTable(
-      [
-        { head: 'set', align: 'left' },
-        { head: 'pressure to hold', align: 'right' },
-        { head: 'or flow to give', align: 'right' },
-        { head: 'in the chip', align: 'right' },
-        { head: 'breaks', align: 'left' },
-        { head: 'pump limits', align: 'left' },
-      ],
-      targets.map((target) => {
-        const { port, pressure, flow, inChip, breaks, limits } = settingCells(one, target);
-        return [cleanText(port), pressure, flow, inChip, breaks, limits];
-      }),
+    ...settingLines(
+      targets.map((target) => settingCells(one, target)),
       width,
     ),
     ...broken.flatMap((text) => wrapText(cleanText(text), width)),

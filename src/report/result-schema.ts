@@ -1,4 +1,5 @@
 import * as v from 'valibot';
+import { RESULT_VERSION } from '../version.ts';
 
 /**
  * The one typed description of the result that leaves the program as JSON and CSV: the TypeScript types (`result-rows.ts`),
@@ -14,7 +15,7 @@ const maybe = (description: string) => v.pipe(v.nullable(v.number()), v.descript
 export const toolSchema = v.strictObject({
   name: text,
   version: text,
-  result_version: v.pipe(v.literal(1), v.description('Version of this format')),
+  result_version: v.pipe(v.literal(RESULT_VERSION), v.description('Version of this format')),
 });
 
 export const layoutSchema = v.strictObject({
@@ -234,6 +235,12 @@ export const spreadSchema = v.strictObject({
   ),
   yield_low: maybe('Lower end of its 95 % interval'),
   yield_high: maybe('Upper end of its 95 % interval'),
+  even: v.pipe(
+    v.record(text, v.nullable(v.number())),
+    v.description(
+      'Share of the draws in which the channels that are to be even are so, by their name in the run sheet',
+    ),
+  ),
   not_judged: v.array(text),
   worst_corner: v.nullable(
     v.strictObject({

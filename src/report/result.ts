@@ -4,6 +4,7 @@ import { type Network, NODE_KINDS } from '../network/types.ts';
 import { tubeVolume } from '../physics/tube.ts';
 import type { JointShares } from '../solve/joint-share.ts';
 import type { FlowState } from '../solve/types.ts';
+import { RESULT_VERSION } from '../version.ts';
 import type {
   BalanceRow,
   CountsRow,
@@ -94,7 +95,7 @@ export function buildCasesResult(
 
 function headOf({ tool, chip, layoutFile }: ResultInput): Head {
   return {
-    tool: { name: tool.name, version: tool.version, result_version: 1 },
+    tool: { name: tool.name, version: tool.version, result_version: RESULT_VERSION },
     layout: {
       file: layoutFile,
       sha256: chip.layoutSha256,

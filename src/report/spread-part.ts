@@ -28,6 +28,12 @@ export function spreadPartOf(spread: Spread): SpreadPart {
     yield: spread.yield?.share ?? null,
     yield_low: spread.yield?.low ?? null,
     yield_high: spread.yield?.high ?? null,
+    even: Object.fromEntries(
+      spread.evenGroups.map(({ key, failures }) => [
+        key,
+        draws === 0 ? null : known((draws - spread.outside - failures) / draws),
+      ]),
+    ),
     not_judged: [...spread.unknownWindows, ...spread.unknownLimits],
     worst_corner:
       corner === null

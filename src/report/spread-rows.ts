@@ -172,7 +172,7 @@ export function yieldText({ yield: chance, unknownWindows, draws }: Spread): str
 
 /** What else must be said of the sample, one sentence each. */
 export function remarks(spread: Spread): readonly string[] {
-  const { draws, asked, outside, turbulent, idle, leftOut, unknownLimits, outputs } = spread;
+  const { draws, asked, outside, turbulent, idle, leftOut, unknownLimits, outputs, evenGroups } = spread;
   const texts: string[] = [];
   if (draws < asked)
     texts.push(
@@ -182,6 +182,12 @@ export function remarks(spread: Spread): readonly string[] {
     texts.push(
       `${outside} of the draws could not be computed (a duct, bore or viscosity at or below 0, or a temperature that no data cover); they count as not holding, and are in no mean or quantile`,
     );
+  }
+  for (const { key, most, failures } of evenGroups) {
+    if (failures > 0)
+      texts.push(
+        `in ${shareText(failures / draws)} of the draws the flows of ${key} are not within ±${formatShare(most)} of their mean`,
+      );
   }
   if (turbulent > 0) texts.push(`in ${turbulent} of the draws some reach was not laminar`);
   const bent = outputs.filter(({ isLinear }) => isLinear === false);

@@ -97,7 +97,8 @@ function parseCases(root: MapNode, values: SheetValues, source: Source): RunShee
     refuseHiddenPorts(base, node, source.file, prefix);
     const merged = mergeCase(base, node);
     const changed = keepPorts(values, validate(caseSchema, merged, source.file, prefix), base, node);
-    return { name, sheet: toRunSheet(changed, merged, source, prefix) };
+    const changedPorts = [...portsOf(node).keys()];
+    return { name, sheet: { ...toRunSheet(changed, merged, source, prefix), changedPorts } };
   });
 }
 
@@ -251,6 +252,7 @@ function toRunSheet(values: SheetValues, root: MapNode, source: Source, prefix: 
     cases: [],
     show: toShow(values.show),
     accept: (values.accept ?? []).map((entry, i): AcceptEntry => ({ ...entry, line: at('accept', i) })),
+    changedPorts: [],
     lineOf,
   };
 }

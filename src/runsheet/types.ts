@@ -233,6 +233,8 @@ export interface RunSheet {
   readonly cases: readonly { readonly name: string; readonly sheet: RunSheet }[];
   readonly show: ShowUnits;
   readonly accept: readonly AcceptEntry[];
+  /** Names and patterns that the case writes under `ports`; none for the sheet itself. */
+  readonly changedPorts: readonly string[];
   /** Line of a key path such as ['ports', 'feed', 'pressure'], 1-based; null when not written. */
   readonly lineOf: (path: readonly (string | number)[]) => number | null;
 }

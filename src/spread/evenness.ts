@@ -4,9 +4,21 @@ import { acceptedLimits } from './accepted.ts';
 import type { ChipState, SpreadModel } from './model.ts';
 import { channelReaches } from './passages.ts';
 
+/** One group of channels that are to be even, and how often they were not. */
+export interface EvenGroup {
+  /** Name or pattern as the run sheet has it. */
+  readonly key: string;
+  /** How far a flow may lie off their mean, as a share of it. */
+  readonly most: number;
+  /** Draws in which one lay further off. */
+  readonly failures: number;
+}
+
 export interface Evenness {
-  /** Whether every group of channels that is to be even is so, as the rule uneven-flow judges it. */
+  /** Whether every group of channels that is to be even is so, as the rule uneven-flow judges it. Counts what is not. */
   readonly isKept: (state: ChipState) => boolean;
+  /** The groups judged, with what was counted so far. */
+  readonly groups: () => readonly EvenGroup[];
   /** Keys of groups with a flow that can't be known. */
   readonly unknown: readonly string[];
 }
@@ -32,9 +44,19 @@ export function evennessOf({ chip, network, nominal }: SpreadModel): Evenness {
       (reaches) => reaches.length > 0 && reaches.every((reach) => !Number.isNaN(nominal.reachFlow[reach])),
     );
   const judged = groups.filter(isKnown);
+  const failures = new Int32Array(judged.length);
   return {
     unknown: groups.filter((group) => !isKnown(group)).map(({ key }) => key),
-    isKept: ({ flow }) => judged.every((group) => isEven(group, flow.flow)),
+    groups: () => judged.map(({ key, most }, g) => ({ key, most, failures: failures[g] })),
+    isKept: ({ flow }) => {
+      let kept = true;
+      for (const [g, group] of judged.entries()) {
+        if (isEven(group, flow.flow)) continue;
+        failures[g]++;
+        kept = false;
+      }
+      return kept;
+    },
   };
 }
 

@@ -1,7 +1,7 @@
 import { isAbove } from '../findings/rule.ts';
 import { reynoldsNumber } from '../physics/reynolds.ts';
 import { acceptedLimits } from './accepted.ts';
-import { evennessOf } from './evenness.ts';
+import { type EvenGroup, evennessOf } from './evenness.ts';
 import type { ChipState, SpreadModel } from './model.ts';
 import { flowingIn, isKept, type Output, outputValue, timeOutputs } from './outputs.ts';
 import { channelReaches } from './passages.ts';
@@ -18,6 +18,8 @@ export interface Judge {
   readonly failures: Int32Array;
   /** Draws in which some reach was not laminar. */
   readonly turbulent: () => number;
+  /** Groups of channels that are to be even, and the draws in which they were not. */
+  readonly evenGroups: () => readonly EvenGroup[];
   /** Windows and limits of numbers that can't be known, so that nobody can say whether they are kept. */
   readonly unknownWindows: readonly string[];
   readonly unknownLimits: readonly string[];
@@ -43,6 +45,7 @@ export function makeJudge(model: SpreadModel, outputs: readonly Output[], nomina
     unknownWindows: [...named(true), ...evenness.unknown.map((key) => `evenness of ${key}`)],
     unknownLimits: named(false),
     turbulent: () => turbulent,
+    evenGroups: evenness.groups,
     isGood: (values, state) => {
       let good = true;
       const anew = regrouped(state);

@@ -71,6 +71,7 @@ export async function spreadOf(
     unknownWindows: judge.unknownWindows,
     unknownLimits: judge.unknownLimits,
     turbulent: judge.turbulent(),
+    evenGroups: judge.evenGroups(),
     corner: worstCorner(
       model,
       causes.length,

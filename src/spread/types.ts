@@ -1,4 +1,5 @@
 import type { WorstCorner } from './corner.ts';
+import type { EvenGroup } from './evenness.ts';
 import type { Output } from './outputs.ts';
 import type { Chance } from './statistics.ts';
 import type { Cause } from './variables.ts';
@@ -26,6 +27,8 @@ export interface Spread {
   readonly unknownLimits: readonly string[];
   /** Draws in which some reach was not laminar. */
   readonly turbulent: number;
+  /** Groups of channels that are to be even, and the draws in which they were not. */
+  readonly evenGroups: readonly EvenGroup[];
   readonly corner: WorstCorner | null;
 }
 

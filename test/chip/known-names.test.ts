@@ -16,6 +16,9 @@ const drafts: readonly Draft[] = [
   ignored('label', 'text'),
 ];
 
+const NAMED = `<svg xmlns="http://www.w3.org/2000/svg" width="40mm" height="20mm" viewBox="0 0 40 20">
+  <path id="run" d="M4 10H36" fill="none" stroke="#000" stroke-width=".2"/><circle id="feed" cx="4" cy="10" r="1"/><circle id="waste" cx="36" cy="10" r="1"/></svg>`;
+
 describe('a name that the drawing lacks', () => {
   for (const [sheet, message] of [
     ['ports: { fed: open }', '2: ports.fed: the drawing has no port "fed"; did you mean "feed"?'],
@@ -144,6 +147,23 @@ describe('a name that the drawing lacks', () => {
     expect(chip.sheet!.targets.map(({ name }) => name)).toEqual(['lane-1', 'waste']);
     // a shape without a name is nobody's
     expect(chip.ports.map(({ condition }) => condition.kind)).toEqual(['open', 'sealed', 'unset']);
+  });
+
+  it('may be a pattern that a case goes before at every port: it speaks for the other cases', () => {
+    const sheet = (ports: string): string =>
+      `depth: 50 um\nports: { "fe*": { pressure: 1 kPa } }\ncases: { a: { ports: { ${ports} } } }`;
+    const inCase = (text: string) =>
+      assembleChip({
+        layout: layOut(readSvg(NAMED, 'c.svg'), 'c.svg'),
+        sheet: parseRunSheet(text, 'c.run.yaml').cases[0]!.sheet,
+        file: 'c.svg',
+        layoutSha256: '0'.repeat(64),
+      });
+    expect(inCase(sheet('feed: { flow: 1 uL/min }')).ports[0]!.condition.kind).toBe('flow');
+    // but the sheet's own names overrule it as ever
+    expect(() => inCase(sheet('waste: open').replace('"fe*"', 'feed: open, "fe*"'))).toThrow(
+      '2: ports.fe*: every port that it matches has an entry that goes before it',
+    );
   });
 
   it('may stand under channels for a chamber, and a switch may ask for a reach of several', () => {

@@ -67,6 +67,22 @@ describe('rillcheck draft', () => {
     },
   );
 
+  it('tells the layers of what is drawn, however many shapes before it draw nothing', async () => {
+    const nothing =
+      '<path d="M0 0H9" stroke="none" fill="none"/><line x2="5" stroke="#000" stroke-width="0"/>';
+    put(
+      'gaps.svg',
+      `<svg xmlns="http://www.w3.org/2000/svg" width="30mm" height="30mm" viewBox="0 0 30 30">${nothing}<g id="lanes">${nothing}<path data-name="lane" d="M5 15H25" fill="none" stroke="#000" stroke-width="0.4"/></g><g id="holes"><circle data-name="in" cx="5" cy="15" r="1"/><circle data-name="out" cx="25" cy="15" r="1"/></g></svg>`,
+    );
+    expect(await rillcheck('draft', 'gaps.svg')).toMatchObject({ code: 0, err: '' });
+    const text = read('gaps.run.yaml');
+    expect(text).toContain('  lanes: {} # fill in: { depth: 50 um }; 1 channel\n');
+    expect(text).toContain('  lane: {} # 0.4 mm wide, in lanes\n');
+    expect(text).toContain(
+      '# ports_layer: holes # only circles of this layer are ports; all that were found lie in it\n',
+    );
+  });
+
   it('proposes planes for layers that cross, says what it assumes, and check then sees no crossing', async () => {
     const strokes = (d: string): string => `<path d="${d}" fill="none" stroke="#000" stroke-width="0.2"/>`;
     put(

@@ -87,10 +87,10 @@ describe('rillcheck pump', () => {
     expect(finding).toMatchObject({ severity: 'blocker', limit: 1000, unit: 'Pa', names: ['in', 'lane'] });
     expect(finding.measured).toBe(pump.settings[0].supply_pressure_pa);
     expect(finding.message).toMatch(
-      /^the pump at in would have to hold .* more than the 1 kPa that it can to reach 0\.5 Pa of wall_shear \(mean\) in lane$/,
+      /^to reach 0\.5 Pa of mean wall shear in lane, the pump at in would have to hold .* more than the 1 kPa that it can$/,
     );
     const share = 1000 / pump.settings[0].supply_pressure_pa;
-    expect(finding.fix).toContain(`wall_shear of lane is ${Number((0.5 * share).toPrecision(4))} Pa`);
+    expect(finding.fix).toContain(`mean wall shear of lane is ${Number((0.5 * share).toPrecision(4))} Pa`);
   });
 
   it('holds a setting for which no limit is given against what is usual, as a caution', async () => {
@@ -151,6 +151,9 @@ describe('rillcheck pump', () => {
     };
     expect(await row('flow: -5 uL/min')).toMatch(/\nin .* backflow {2}within/);
     expect(await row('flow: 5 uL/min')).not.toContain('breaks');
+    // limits are never cut off
+    expect(await row('flow: -5 uL/min')).toMatch(/\npump limits of in: -80 to 700 kPa, at most 10 mL\/min/);
+    expect(await row('flow: 5 uL/min')).toContain('-80 to 700 kPa, at most 10 mL/min');
     expect(await row('flow: 5 uL/min', 'limits: { max_pressure: 1 Pa }\n')).toMatch(
       /\nin .* over-pressure {2}within/,
     );
@@ -258,6 +261,8 @@ describe('rillcheck pump', () => {
     const wrong = await rillcheck('pump', 'chip.svg', '--case', 'sead');
     expect(wrong).toMatchObject({ code: 2, out: '' });
     expect(wrong.err).toContain('there is no case "sead"; did you mean "seed"?');
+    const far = await rillcheck('pump', 'chip.svg', '--case', 'incubation');
+    expect(far.err).toMatch(/there is no case "incubation"; its cases are \w/);
   });
 
   it('ends 2 with one line where there is nothing to find', async () => {

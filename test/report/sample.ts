@@ -340,6 +340,7 @@ function sampleSheet(names: SampleNames, show: ShowUnits): RunSheet {
     cases: [],
     show,
     accept: [],
+    changedPorts: [],
     lineOf: () => null,
   };
 }

@@ -1,4 +1,5 @@
 import { expect, test } from 'vitest';
+import { remarks } from '../../src/report/spread-rows.ts';
 import { spreadOfDrawing } from './spread-of.ts';
 
 /** Two lanes of one length on separate pumps; how wide each comes out is its own matter, but a given flow is not. */
@@ -33,6 +34,15 @@ test.each([0.5, 1, 2])(
     expect(spread.yield).not.toBeNull();
     const good = spread.isGood.reduce((sum, flag) => sum + flag, 0) / spread.draws;
     expect(Math.abs(good - shareWithin(percent / 100))).toBeLessThan(0.02);
+    const failures = Math.round((1 - good) * spread.draws);
+    expect(spread.evenGroups).toEqual([{ key: 'lane-*', most: percent / 100, failures }]);
+    // else nobody could tell why draws fail: no number that is followed does
+    expect(spread.outputs.every((output) => output.failures === 0)).toBe(true);
+    expect(remarks(spread).join('\n')).toMatch(
+      new RegExp(
+        `in [\\d.]+ % of the draws the flows of lane-\\* are not within ±${percent} % of their mean`,
+      ),
+    );
   },
 );
 

@@ -108,6 +108,7 @@ test('remarks say what was stopped, left out, not linear and idle', () => {
     asked: 9000,
     outside: 7,
     turbulent: 3,
+    evenGroups: [{ key: 'lane-*', most: 0.05, failures: 12 }],
     leftOut: 5,
     outputs: [bent],
     idle: ['bore: no port has tubing'],
@@ -116,6 +117,7 @@ test('remarks say what was stopped, left out, not linear and idle', () => {
   expect(texts).toEqual([
     'stopped before the end: 2000 of 9000 draws were made, and everything here is of those',
     expect.stringContaining('7 of the draws could not be computed'),
+    'in 0.6 % of the draws the flows of lane-* are not within ±5 % of their mean',
     'in 3 of the draws some reach was not laminar',
     'the response is not linear there, go by the sample: floor shear, peak of lane',
     'moves nothing: bore: no port has tubing',

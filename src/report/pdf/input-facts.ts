@@ -1,4 +1,5 @@
 import type { Chip } from '../../chip/types.ts';
+import { unreadText } from '../../findings/words.ts';
 import { formatMm, formatNumber } from '../../runsheet/shown.ts';
 import { jointsText } from '../joints-text.ts';
 import { plural } from '../verdict-line.ts';
@@ -69,5 +70,5 @@ function ignoredText({ ignored }: Chip): string {
   const kinds = Object.entries(ignored).filter(([, count]) => count > 0);
   return kinds.length === 0
     ? 'nothing: all that is drawn was read'
-    : kinds.map(([kind, count]) => `${count} ${kind}`).join(', ');
+    : kinds.map(([kind, count]) => unreadText(kind, count)).join(', ');
 }

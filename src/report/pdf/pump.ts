@@ -51,8 +51,8 @@ export function writePump({ paper, one }: PageContext): void {
       { head: 'pump limits', align: 'left', width: 'wrap' },
     ],
     pump.targets.map((target) => {
-      const { port, pressure, flow, inChip, breaks, limits } = settingCells(one, target);
-      return cells(port, pressure, flow, inChip, breaks === '' ? 'no limit' : breaks, limits);
+      const { port, pressure, flow, inChip, breaks, kept, limits } = settingCells(one, target);
+      return cells(port, pressure, flow, inChip, breaks === '' ? 'no limit' : breaks, `${kept}: ${limits}`);
     }),
     { size: 7.5 },
   );
