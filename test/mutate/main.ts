@@ -32,11 +32,12 @@ const LEFT_OUT = /^test\/(?:bench|browser|faults|fuzz|mutate)\//;
 
 /**
  * npm run mutate -- [--sample 600] [--seed 1] [--minutes 60] [--only src/solve,src/findings/windows.ts:20] [--tests test/solve,…]
+ *   [--each 120]
  *
  * Changes one place of the source at a time and asks the tests that run this place whether they notice. All happens in a copy of
  * the committed tree, so nothing here is ever touched. First all tests run once and note which functions each file of tests runs;
  * then each mutation is put before those files, the nearest first, until one fails. Those that take longest are left out beyond
- * two minutes of tests for one mutation, so the score is a lower bound. The sample is in random order: what an hour allows of it
+ * `--each` seconds of tests for one mutation, so the score is a lower bound. The sample is in random order: what an hour allows of it
  * is a smaller sample, as fair.
  */
 export async function main(args: readonly string[]): Promise<void> {
@@ -48,6 +49,7 @@ export async function main(args: readonly string[]): Promise<void> {
       minutes: { type: 'string', default: '60' },
       only: { type: 'string', default: '' },
       tests: { type: 'string', default: 'test/' },
+      each: { type: 'string', default: '120' },
     },
   });
   const endsAt = Date.now() + Number(values.minutes) * 60_000;
@@ -75,10 +77,10 @@ export async function main(args: readonly string[]): Promise<void> {
     const outcomes: Outcome[] = [];
     for (const mutation of sample) {
       if (Date.now() > endsAt) break;
-      const files = testsFor(table, mutation);
+      const files = testsFor(table, mutation, Number(values.each));
       runner ??= new Runner(copy, 'mutate');
       const outcome = { mutation, ...(await tryOne(copy, runner, table, mutation, files)) };
-      if (outcome.by === 'time') runner = null;
+      if (outcome.by === 'time' || outcome.by === 'a crash') runner = null;
       outcomes.push(outcome);
       console.error(`${outcomes.length}/${sample.length} ${outcome.by ?? 'SURVIVED'} ${placeOf(mutation)}`);
     }
@@ -152,7 +154,7 @@ async function mapTests(
   const runner = new Runner(copy, 'map');
   const answer = await runner.ask(tests, [], 3_600_000);
   runner.stop();
-  if (answer === null) throw new Error('the tests did not end within an hour');
+  if (typeof answer === 'string') throw new Error(`the tests did not end: ${answer}`);
   for (const file of sources) cpSync(file, join(copy, file));
   if (answer.failed.length > 0)
     console.log(`Left out, as they fail without any mutation: ${answer.failed.join(', ')}`);
@@ -172,11 +174,8 @@ async function mapTests(
   return { firstMark, functionCount, testsOf, onLoading, seconds };
 }
 
-/** Seconds of tests for one mutation. */
-const MOST_SECONDS = 120;
-
-/** The files of tests that run a mutation's function: those of its own folder first, then the quickest. */
-function testsFor(table: TestTable, { file, within }: Mutation): string[] {
+/** The files of tests that run a mutation's function: those of its own folder first, then the quickest, for so many seconds. */
+function testsFor(table: TestTable, { file, within }: Mutation, mostSeconds: number): string[] {
   const first = table.firstMark.get(file) ?? 0;
   const own = first + within;
   const found = new Set<string>();
@@ -193,7 +192,7 @@ function testsFor(table: TestTable, { file, within }: Mutation): string[] {
     .sort((a, b) => cost(a) - cost(b))
     .filter((test, i) => {
       seconds += table.seconds.get(test) ?? 0;
-      return i === 0 || seconds <= MOST_SECONDS;
+      return i === 0 || seconds <= mostSeconds;
     });
 }
 
@@ -201,7 +200,7 @@ function testsFor(table: TestTable, { file, within }: Mutation): string[] {
 
 interface Outcome {
   readonly mutation: Mutation;
-  /** The file of tests that noticed it, `time` where they did not end; null where nothing did. */
+  /** The file of tests that noticed it, `time` or `a crash` where they did not end; null where nothing did. */
   readonly by: string | null;
   readonly asked: number;
 }
@@ -220,9 +219,9 @@ async function tryOne(
     writeFileSync(path, text.slice(0, start) + becomes + text.slice(end));
     const expected = tests.reduce((sum, test) => sum + (seconds.get(test) ?? 0), 0);
     const answer = await runner.ask(tests, [file], 1000 * (60 + 5 * expected));
-    if (answer === null) {
+    if (typeof answer === 'string') {
       runner.stop();
-      return { by: 'time', asked: tests.length };
+      return { by: answer, asked: tests.length };
     }
     const by = answer.failed[0] ?? (answer.hasErrors ? 'an error outside tests' : null);
     return { by, asked: tests.length };
@@ -237,6 +236,9 @@ interface Answer {
   readonly hasErrors: boolean;
 }
 
+/** The tests hung, or took their process with them. */
+type NoAnswer = 'time' | 'a crash';
+
 /** The process that runs the tests; one that hangs is ended whole. */
 class Runner {
   private readonly child: ChildProcess;
@@ -250,17 +252,16 @@ class Runner {
     this.ready = this.next();
   }
 
-  /** null where there was no answer in time. */
   async ask(files: readonly string[], changed: readonly string[], withinMs: number): Promise<Answer | null> {
     await this.ready;
     const answer = this.next();
     this.child.send({ files, changed });
     let timer: NodeJS.Timeout | undefined;
-    const late = new Promise<null>((resolve) => {
-      timer = setTimeout(() => resolve(null), withinMs);
+    const late = new Promise<NoAnswer>((resolve) => {
+      timer = setTimeout(() => resolve('time'), withinMs);
     });
     try {
-      return (await Promise.race([answer, late])) as Answer | null;
+      return (await Promise.race([answer, late])) as Answer | NoAnswer;
     } finally {
       clearTimeout(timer);
     }
@@ -272,8 +273,8 @@ class Runner {
   }
 
   private next(): Promise<unknown> {
-    return new Promise((resolve, reject) => {
-      const onExit = (): void => reject(new Error('the process that runs the tests has ended'));
+    return new Promise((resolve) => {
+      const onExit = (): void => resolve('a crash');
       this.child.once('exit', onExit);
       this.child.once('message', (message) => {
         this.child.off('exit', onExit);
@@ -302,7 +303,7 @@ function report(outcomes: readonly Outcome[], wanted: number): void {
   console.log(
     `${killed} of ${outcomes.length} mutations were noticed: ${percent(killed / outcomes.length)} % (95 % interval ${percent(low)} to ${percent(high)} %).`,
   );
-  const late = outcomes.filter(({ by }) => by === 'time').length;
+  const late = outcomes.filter(({ by }) => by === 'time' || by === 'a crash').length;
   if (late > 0) console.log(`${late} of them since the tests did not end.`);
   for (const { mutation, asked } of survivors)
     console.log(`survived ${asked} files of tests: ${placeOf(mutation)}`);
