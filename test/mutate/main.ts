@@ -218,7 +218,7 @@ async function tryOne(
   try {
     writeFileSync(path, text.slice(0, start) + becomes + text.slice(end));
     const expected = tests.reduce((sum, test) => sum + (seconds.get(test) ?? 0), 0);
-    const answer = await runner.ask(tests, [file], 1000 * (60 + 5 * expected));
+    const answer = await runner.ask(tests, [file], 1000 * (20 + 4 * expected));
     if (typeof answer === 'string') {
       runner.stop();
       return { by: answer, asked: tests.length };
@@ -252,7 +252,11 @@ class Runner {
     this.ready = this.next();
   }
 
-  async ask(files: readonly string[], changed: readonly string[], withinMs: number): Promise<Answer | null> {
+  async ask(
+    files: readonly string[],
+    changed: readonly string[],
+    withinMs: number,
+  ): Promise<Answer | NoAnswer> {
     await this.ready;
     const answer = this.next();
     this.child.send({ files, changed });

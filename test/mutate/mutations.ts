@@ -139,7 +139,7 @@ export function functionsOf(file: string, text: string): FunctionBody[] {
     const isExpression = bodyType !== 'BlockStatement';
     bodies.push({ start: isExpression ? start : start + 1, end, isExpression });
   });
-  return bodies;
+  return bodies.sort((a, b) => a.start - b.start);
 }
 
 /** The source with a mark set on entry to every function. */
