@@ -78,9 +78,20 @@ export async function main(args: readonly string[]): Promise<void> {
     for (const mutation of sample) {
       if (Date.now() > endsAt) break;
       const files = testsFor(table, mutation, Number(values.each));
-      runner ??= new Runner(copy, 'mutate');
-      const outcome = { mutation, ...(await tryOne(copy, runner, table, mutation, files)) };
-      if (outcome.by === 'time' || outcome.by === 'a crash') runner = null;
+      let tried: Omit<Outcome, 'mutation'> | null = null;
+      for (let again = 0; again < 2 && tried === null; again++) {
+        runner ??= new Runner(copy, 'mutate');
+        tried = await tryOne(copy, runner, table, mutation, files);
+        if (tried === null || tried.by === 'time' || tried.by === 'a crash') {
+          runner.stop();
+          runner = null;
+        }
+      }
+      if (tried === null) {
+        console.log(`not counted, its tests fail without it too: ${placeOf(mutation)}`);
+        continue;
+      }
+      const outcome = { mutation, ...tried };
       outcomes.push(outcome);
       console.error(`${outcomes.length}/${sample.length} ${outcome.by ?? 'SURVIVED'} ${placeOf(mutation)}`);
     }
@@ -205,13 +216,14 @@ interface Outcome {
   readonly asked: number;
 }
 
+/** null where the tests fail without the mutation too. */
 async function tryOne(
   copy: string,
   runner: Runner,
   { seconds }: TestTable,
   { file, start, end, becomes }: Mutation,
   tests: readonly string[],
-): Promise<Omit<Outcome, 'mutation'>> {
+): Promise<Omit<Outcome, 'mutation'> | null> {
   if (tests.length === 0) return { by: null, asked: 0 };
   const path = join(copy, file);
   const text = readFileSync(path, 'utf8');
@@ -220,11 +232,14 @@ async function tryOne(
     const expected = tests.reduce((sum, test) => sum + (seconds.get(test) ?? 0), 0);
     const answer = await runner.ask(tests, [file], 1000 * (20 + 4 * expected));
     if (typeof answer === 'string') {
-      runner.stop();
       return { by: answer, asked: tests.length };
     }
-    const by = answer.failed[0] ?? (answer.hasErrors ? 'an error outside tests' : null);
-    return { by, asked: tests.length };
+    const by = answer.failed[0] ?? null;
+    if (by === null) return { by: answer.hasErrors ? 'an error outside tests' : null, asked: tests.length };
+    // Without the mutation the same file must pass, or what failed is this process (what earlier mutations left in it).
+    writeFileSync(path, text);
+    const control = await runner.ask([by], [file], 1000 * (20 + 4 * expected));
+    return typeof control === 'string' || control.failed.length > 0 ? null : { by, asked: tests.length };
   } finally {
     writeFileSync(path, text);
   }
