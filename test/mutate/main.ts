@@ -195,6 +195,8 @@ function testsFor(table: TestTable, { file, within }: Mutation, mostSeconds: num
     for (let k = 0; k < (table.functionCount.get(file) ?? 0); k++)
       for (const test of table.testsOf[first + k]) found.add(test);
   }
+  // a table of constants without a function: nothing says who reads it
+  if ((table.functionCount.get(file) ?? 0) === 0) for (const test of table.seconds.keys()) found.add(test);
   const folder = dirname(file).replace(/^src/, 'test');
   const cost = (test: string): number =>
     (dirname(test) === folder ? 0 : 1e6) + (table.seconds.get(test) ?? 0);
