@@ -158,7 +158,7 @@ describe.skipIf(COPY === null)('the program as a process (skipped without dist/)
       await new Promise((resolve) => setTimeout(resolve, 1));
     }
     expect(await ended).toBeLessThan(2);
-    expect(looks).toBeGreaterThan(10);
+    expect(looks).toBeGreaterThan(0);
   });
 
   describe('Ctrl-C', () => {

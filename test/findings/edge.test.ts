@@ -34,6 +34,12 @@ describe('the chip edge', () => {
     expect([findings[0].xMm, findings[0].yMm]).toEqual([10, 23]);
   });
 
+  it('says how near, and how near it may come', () => {
+    const [finding] = edgeFindings([SQUARE], [{ name: 'a', widthMm: 0.2, lines: [[5, 0.5, 15, 0.5]] }]);
+    expect(finding.message).toBe('a comes within 400 µm of the chip edge; edge_margin is 1 mm');
+    expect(finding.fix).toContain('0.6 mm');
+  });
+
   it('makes two findings of a channel that comes near the edge at two places', () => {
     const findings = edgeFindings(
       [SQUARE],

@@ -144,6 +144,8 @@ function expectSound({ rule, message, fix, names, measured, limit, unit }: Findi
     expect(text).not.toMatch(/NaN|undefined|null|Infinity|\[object/);
     expect(text).not.toBe('');
   }
+  // a word that was to stand there is missing
+  for (const text of [message, fix]) expect(text).not.toMatch(/^\s|\s$|\s\s|\s[,.;:)]|[(]\s|[(][)]/);
   expect((limit === null) === (unit === null), `${rule} has a limit and a unit, or neither`).toBe(true);
   if (measured !== null) expect(unit, `${rule} measures in a unit`).not.toBeNull();
   const measure = RULE_MEASURES.get(rule);

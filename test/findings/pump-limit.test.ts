@@ -33,6 +33,10 @@ describe('pump-limit', () => {
     expect(fast.message).toContain('draw 30 µL/min, more than the 20 µL/min that it can');
   });
 
+  it('lets a pump draw as much as it may give', () => {
+    expect(pumpFindings('{ flow: -19 uL/min }', '{ max_flow: 20 uL/min }').findings).toEqual([]);
+  });
+
   it('looks at the pressure at the far end of the tubing, which a syringe pump must push against', () => {
     const tubing = 'tubing: { bore: 0.1 mm, length: 500 mm }';
     const free = pumpFindings('{ flow: 20 uL/min }', '{ max_pressure: 20 kPa }');

@@ -54,6 +54,21 @@ describe('corners', () => {
     });
   }
 
+  it('leaves a short reach at a corner half its length and hands what is left of the correction on to its neighbours', () => {
+    // seams 0.2 w before and after a corner that takes 0.4 w or more
+    const { joint, duct, drawn } = resolved([
+      { name: 'before', widthMm: W, lines: [[0, 0, 0.98, 0]] },
+      { name: 'short', widthMm: W, lines: [[0.98, 0, 1, 0, 1, 0.02]] },
+      { name: 'after', widthMm: W, lines: [[1, 0.02, 1, 2]] },
+    ]);
+    const whole = mitreK(1, Math.PI / 2).k * W;
+    expect(whole).toBeLessThan(-0.02);
+    expect(duct.short).toBeCloseTo(drawn.short / 2, 12);
+    expect(joint.before + joint.short + joint.after).toBeCloseTo(whole, 12);
+    // in proportion to what each could still give
+    expect(joint.before / joint.after).toBeCloseTo(0.98 / 1.98, 9);
+  });
+
   it('computes nothing beyond 120° and says by how much it could be off', () => {
     const { joint, bound, kinds } = resolved([{ name: 'a', widthMm: W, lines: [corner(130)] }]);
     expect(joint.a).toBe(0);
@@ -162,6 +177,18 @@ describe('junctions', () => {
     expect(joint.a).toBeCloseTo(k.mainHalf * W, 12);
     expect(joint.side).toBeCloseTo(k.side * W, 12);
     expect(duct.side - joint.side).toBeCloseTo(drawn.side - 2 * W, 12);
+  });
+
+  it('asks for 1.48 w from the wall of a wide main to the next joint on its side: from its meeting point that of equal ducts is 1.98 w', () => {
+    const bent = (fromWall: number) => {
+      const y = 2 * W + fromWall * W;
+      return resolved([
+        { name: 'main', widthMm: 4 * W, lines: [[-3, 0, 3, 0]] },
+        { name: 'side', widthMm: W, lines: [[0, 0, 0, y, 3, y]] },
+      ]).kinds;
+    };
+    expect(bent(1.5)).toMatchObject({ 'T into a wider main': 1 });
+    expect(bent(1.46)).toMatchObject({ 'junction with short arms not computed': 1 });
   });
 
   it('computes a T within 5° of square and none beyond', () => {

@@ -202,6 +202,23 @@ describe('by angle and radius', () => {
     expect(bendK(1, 1, Math.PI).error).toBeGreaterThanOrEqual(0.03);
     expect(() => bendK(1, 0.9, 1)).toThrow(/radius of one width upwards, not 0\.9/);
   });
+
+  it('a bend states 0.0025, up to 0.005 more as it tightens to 2 w, and up to 0.03 more from 5° off the computed angle on', () => {
+    const error = (radius: number, degrees: number): number =>
+      bendK(1, radius, (degrees * Math.PI) / 180).error;
+    expect(error(1, 90)).toBeCloseTo(0.0075, 12);
+    expect(error(2, 90)).toBeCloseTo(0.0075, 12);
+    expect(error(8, 90)).toBeCloseTo(0.0025 + 0.005 / 4, 12);
+    for (const off of [-1, 1]) {
+      const own = (degrees: number): number => 0.0075 * Math.min(1, degrees / 90);
+      expect(error(1, 90 + 2.5 * off)).toBeCloseTo(own(90 + 2.5 * off) + 0.015, 12);
+      expect(error(1, 90 + 5 * off)).toBeCloseTo(own(90 + 5 * off) + 0.03, 12);
+      expect(error(1, 90 + 40 * off)).toBeCloseTo(own(90 + 40 * off) + 0.03, 12);
+    }
+    // vanishes with the bend
+    expect(error(1, 9)).toBeCloseTo(0.00075 + 0.006, 12);
+    expect(error(1, 0)).toBe(0);
+  });
 });
 
 it('an aspect or ratio outside what was computed is refused', () => {

@@ -159,6 +159,13 @@ describe('parts', () => {
     expect(state.worstImbalance).toBeLessThan(1e-12);
   });
 
+  test('flows alone add up where they miss by less than a billionth of the largest, and not beyond', () => {
+    const missing = (share: number): string =>
+      solveFlow(networkOf(tee, [at(0, flow(1e-10)), at(3, flow(-1e-10 * (1 - share)))])).parts[0].status;
+    expect(missing(0.9e-9)).toBe('no-reference');
+    expect(missing(1.1e-9)).toBe('flows-do-not-add-up');
+  });
+
   test('flows alone that do not add up give nothing but their sum', () => {
     const state = solveFlow(networkOf(tee, [at(0, flow(1e-10)), at(3, flow(-0.9e-10))]));
     expect(state.parts[0].status).toBe('flows-do-not-add-up');

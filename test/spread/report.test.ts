@@ -90,6 +90,23 @@ test('the causes of windows add up to all, and the yield is said with its interv
   );
 });
 
+test('the causes overall are the plain mean over what has a window and moves; without windows, over all that moves', () => {
+  const of = (hasWindow: boolean, ...shares: readonly number[]) => ({
+    ...peak,
+    hasWindow,
+    shares: shares.length === 0 ? null : Float64Array.from(shares),
+  });
+  const free = [of(false, 0, 0, 0, 1), of(false, 0, 0.5, 0, 0.5)];
+  const windowed = [of(true, 1, 0, 0, 0), of(true), of(true, 0.5, 0.25, 0.25, 0)];
+  const overall = (outputs: readonly ReturnType<typeof of>[]) => overallShares({ ...spread, outputs });
+  expect(overall([...free, ...windowed])).toEqual({
+    shares: Float64Array.of(0.75, 0.125, 0.125, 0),
+    over: 'windows',
+  });
+  expect(overall([...free, of(true)])).toEqual({ shares: Float64Array.of(0, 0.25, 0, 0.75), over: 'all' });
+  expect(overall([of(true), of(false)])).toBeNull();
+});
+
 test('a share near all or none is never rounded to it', () => {
   expect([1, 0.99999, 0.9999, 0.5, 0.00001, 0].map(shareText)).toEqual([
     '100 %',
