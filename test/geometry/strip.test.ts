@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { toPieces } from '../../src/geometry/pieces.ts';
-import { addStripStretches, coveredUpTo, isInPieceStrip } from '../../src/geometry/strip.ts';
+import { addStripStretches, coveredUpTo, isInPieceStrip, type StripEnds } from '../../src/geometry/strip.ts';
 import { chipOf } from '../network/chip-of.ts';
 import { randomFrom } from '../solve/graphs.ts';
 
@@ -12,9 +12,9 @@ const pieces = toPieces(
     { name: 'b', widthMm: 1, lines: [[0, 20, 10, 20]] },
   ]).channels,
 );
-const seam = { seam: Uint8Array.of(0, 0, 0, 1) };
+const seam: StripEnds = { seam: Uint8Array.of(0, 0, 0, 1), seamWith: Int32Array.of(-1, -1, -1, -1) };
 
-function stretches(piece: number, line: readonly number[], slackMm = 0, ends: typeof seam | null = null) {
+function stretches(piece: number, line: readonly number[], slackMm = 0, ends: StripEnds | null = null) {
   const into: number[] = [];
   const [ax, ay, bx, by] = line;
   addStripStretches(into, pieces, piece, ax, ay, bx, by, slackMm, ends);
