@@ -1,5 +1,5 @@
 import type { Draft } from './draft.ts';
-import type { Kept } from './overshoot.ts';
+import type { Kept } from './kept.ts';
 import type { Stops } from './stops.ts';
 
 /** Shorter than this there is no reach: its nodes are one. Far above rounding, far below anything drawn. */

@@ -11,7 +11,7 @@ import {
   type StripEnds,
 } from '../geometry/strip.ts';
 import { type Draft, isCarriedStraightOn, pointAt } from './draft.ts';
-import type { Kept } from './overshoot.ts';
+import type { Kept } from './kept.ts';
 
 /**
  * The strips of the centrelines as they were joined: carried on in their own direction (rule 3) or cut back (rule 4), and

@@ -13,19 +13,9 @@ import {
   pointAt,
 } from './draft.ts';
 import { isEqualSize } from './equal-ducts.ts';
+import type { Kept, LeftOut } from './kept.ts';
 import { type NodeStops, type Stops, stopsByNode } from './stops.ts';
 import { piecesNearExtension } from './strips.ts';
-
-/** The part of each centreline that is kept, by position; and what was left out at each end (2c, 2c + 1), mm. */
-export interface Kept {
-  readonly from: Float64Array;
-  readonly to: Float64Array;
-  readonly leftOutMm: Float64Array;
-  /** Why the end piece was left out. */
-  readonly leftOutBy: readonly LeftOut[];
-}
-
-export type LeftOut = 'overshoot' | 'overlap' | 'well-stub' | null;
 
 /** Far below anything drawn, far above rounding. */
 const ROUNDING_MM = 1e-9;

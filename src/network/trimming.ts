@@ -2,9 +2,9 @@ import { pieceAt } from '../geometry/pieces.ts';
 import type { StripEnds } from '../geometry/strip.ts';
 import { type Draft, endPiece } from './draft.ts';
 import { isEqualDuct, isEqualSize } from './equal-ducts.ts';
+import type { Kept } from './kept.ts';
 import { KeptStrips } from './kept-strips.ts';
 import { TRIM_BY_RULE, TRIM_TO_WALL } from './node-joints.ts';
-import type { Kept } from './overshoot.ts';
 import { type NodeStops, type Stops, stopsByNode } from './stops.ts';
 import { reachInStrip, StripNeighbours } from './strips.ts';
 
