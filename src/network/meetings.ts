@@ -40,7 +40,9 @@ function markCrossing(draft: Draft, i: number, j: number): boolean {
   const vy = pieces.y2[j] - cy;
   const cross = ux * vy - uy * vx;
   // Parallel to within rounding of the direction: no single crossing point, the vertices tell (markTouches).
-  if (Math.abs(cross) <= 1e-12 * pieces.length[i] * pieces.length[j]) return false;
+  const sine = Math.abs(cross) / (pieces.length[i] * pieces.length[j]);
+  if (sine <= 1e-12) return false;
+  if (sine <= SAME_DIRECTION_SINE && hasEndBeside(draft, i, j)) return false;
   const wx = cx - ax;
   const wy = cy - ay;
   const s = (wx * vy - wy * vx) / cross;
@@ -48,6 +50,20 @@ function markCrossing(draft: Draft, i: number, j: number): boolean {
   if (!(s >= 0 && s <= 1 && t >= 0 && t <= 1)) return false;
   addMeeting(draft, i, s, j, t);
   return true;
+}
+
+/**
+ * Whether an end of one piece lies within the slack of the other. Of two pieces that lie on each other the place where they
+ * cross is little more than rounding (its error is that of the coordinates over the sine: 1e-4 mm and more), and where one
+ * ends within the slack the place is known without it: by that vertex, or as the end that rule 3 joins.
+ */
+function hasEndBeside({ pieces: p, slackMm }: Draft, i: number, j: number): boolean {
+  return [
+    distanceToSegment(p.x1[i], p.y1[i], p.x1[j], p.y1[j], p.x2[j], p.y2[j]),
+    distanceToSegment(p.x2[i], p.y2[i], p.x1[j], p.y1[j], p.x2[j], p.y2[j]),
+    distanceToSegment(p.x1[j], p.y1[j], p.x1[i], p.y1[i], p.x2[i], p.y2[i]),
+    distanceToSegment(p.x2[j], p.y2[j], p.x1[i], p.y1[i], p.x2[i], p.y2[i]),
+  ].some((distance) => distance <= slackMm);
 }
 
 /** Inner vertices of piece i that lie on piece j within slack. */
