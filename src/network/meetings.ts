@@ -21,10 +21,10 @@ export function markMeetings(draft: Draft): void {
   const { pairA, pairB, pairDistance } = near;
   for (let k = 0; k < near.pairCount; k++) {
     if (pairDistance[k] > slackMm) continue;
-    if (!markCrossing(draft, pairA[k], pairB[k])) {
-      markTouches(draft, pairA[k], pairB[k]);
-      markTouches(draft, pairB[k], pairA[k]);
-    }
+    const [i, j] = [pairA[k], pairB[k]];
+    const lieOnEachOther = Math.abs(sineBetween(draft.pieces, i, j)) <= SAME_DIRECTION_SINE;
+    if (lieOnEachOther && (markAllTouches(draft, i, j) || hasOpenEndBeside(draft, i, j))) continue;
+    if (!markCrossing(draft, i, j) && !lieOnEachOther) markAllTouches(draft, i, j);
   }
 }
 
@@ -40,9 +40,7 @@ function markCrossing(draft: Draft, i: number, j: number): boolean {
   const vy = pieces.y2[j] - cy;
   const cross = ux * vy - uy * vx;
   // Parallel to within rounding of the direction: no single crossing point, the vertices tell (markTouches).
-  const sine = Math.abs(cross) / (pieces.length[i] * pieces.length[j]);
-  if (sine <= 1e-12) return false;
-  if (sine <= SAME_DIRECTION_SINE && hasEndBeside(draft, i, j)) return false;
+  if (Math.abs(cross) <= 1e-12 * pieces.length[i] * pieces.length[j]) return false;
   const wx = cx - ax;
   const wy = cy - ay;
   const s = (wx * vy - wy * vx) / cross;
@@ -53,17 +51,25 @@ function markCrossing(draft: Draft, i: number, j: number): boolean {
 }
 
 /**
- * Whether an end of one piece lies within the slack of the other. Of two pieces that lie on each other the place where they
- * cross is little more than rounding (its error is that of the coordinates over the sine: 1e-4 mm and more), and where one
- * ends within the slack the place is known without it: by that vertex, or as the end that rule 3 joins.
+ * Whether a stroke ends with one piece within the slack of the other. Of two pieces that lie on each other the place where
+ * they cross is little more than rounding (the error of a coordinate over the sine: 1e-4 mm and more). Where a vertex lies
+ * beside the other it tells the place; an end that does is joined by rule 3.
  */
-function hasEndBeside({ pieces: p, slackMm }: Draft, i: number, j: number): boolean {
-  return [
-    distanceToSegment(p.x1[i], p.y1[i], p.x1[j], p.y1[j], p.x2[j], p.y2[j]),
-    distanceToSegment(p.x2[i], p.y2[i], p.x1[j], p.y1[j], p.x2[j], p.y2[j]),
-    distanceToSegment(p.x1[j], p.y1[j], p.x1[i], p.y1[i], p.x2[i], p.y2[i]),
-    distanceToSegment(p.x2[j], p.y2[j], p.x1[i], p.y1[i], p.x2[i], p.y2[i]),
-  ].some((distance) => distance <= slackMm);
+function hasOpenEndBeside({ pieces, slackMm }: Draft, i: number, j: number): boolean {
+  const isBeside = (x: number, y: number, k: number): boolean =>
+    distanceToSegment(x, y, pieces.x1[k], pieces.y1[k], pieces.x2[k], pieces.y2[k]) <= slackMm;
+  const endsBeside = (k: number, other: number): boolean =>
+    (!startsAtVertex(pieces, k) && isBeside(pieces.x1[k], pieces.y1[k], other)) ||
+    (!endsAtVertex(pieces, k) && isBeside(pieces.x2[k], pieces.y2[k], other));
+  return endsBeside(i, j) || endsBeside(j, i);
+}
+
+/** Whether any vertex of one piece was found to touch the other. */
+function markAllTouches(draft: Draft, i: number, j: number): boolean {
+  const before = draft.marks.node.length;
+  markTouches(draft, i, j);
+  markTouches(draft, j, i);
+  return draft.marks.node.length > before;
 }
 
 /** Inner vertices of piece i that lie on piece j within slack. */
