@@ -22,9 +22,9 @@ export function markMeetings(draft: Draft): void {
   for (let k = 0; k < near.pairCount; k++) {
     if (pairDistance[k] > slackMm) continue;
     const [i, j] = [pairA[k], pairB[k]];
-    const lieOnEachOther = Math.abs(sineBetween(draft.pieces, i, j)) <= SAME_DIRECTION_SINE;
-    if (lieOnEachOther && (markAllTouches(draft, i, j) || hasOpenEndBeside(draft, i, j))) continue;
-    if (!markCrossing(draft, i, j) && !lieOnEachOther) markAllTouches(draft, i, j);
+    const isAlong = lieAlong(draft.pieces, i, j);
+    if (isAlong && (markAllTouches(draft, i, j) || hasOpenEndBeside(draft, i, j))) continue;
+    if (!markCrossing(draft, i, j) && !isAlong) markAllTouches(draft, i, j);
   }
 }
 
@@ -116,13 +116,18 @@ function isPassedOnCurve(
   const [before, after] = s === 0 ? [next, i] : [i, next];
   const isFineCut = pieces.chord[before] === pieces.chord[after];
   if (Math.hypot(awayX, awayY) <= ON_IT_MM) {
-    return isFineCut && Math.abs(sineBetween(pieces, i, j)) <= SAME_DIRECTION_SINE;
+    return isFineCut && lieAlong(pieces, i, j);
   }
   // Seen across piece j: its nearest point may be a vertex, though its curve goes on and passes nearer.
   const side = (pieces.x2[j] - pieces.x1[j]) * awayY - (pieces.y2[j] - pieces.y1[j]) * awayX;
   const arriving = side * sineBetween(pieces, j, before);
   const leaving = side * sineBetween(pieces, j, after);
   return isFineCut ? !(arriving < 0 && leaving > 0) : !(arriving <= 0 && leaving >= 0);
+}
+
+/** Whether two pieces run in one direction, but for rounding: where they meet they lie on each other, and need not cross. */
+export function lieAlong(pieces: Pieces, i: number, j: number): boolean {
+  return Math.abs(sineBetween(pieces, i, j)) <= SAME_DIRECTION_SINE;
 }
 
 function sineBetween(pieces: Pieces, i: number, j: number): number {
