@@ -3,7 +3,7 @@ import { compareSeed, failureText } from './compare.ts';
 
 /** Some drawings here; thousands in `npm run fuzz` (test/fuzz/reference.test.ts). */
 const FIRST = 1;
-const COUNT = 50;
+const COUNT = 40;
 
 /** Seeds that once told the program, the second implementation or the known chip apart. */
 const ONCE_WRONG = [
