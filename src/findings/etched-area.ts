@@ -10,6 +10,7 @@ import {
 } from '../geometry/outline.ts';
 import type { Pieces } from '../geometry/pieces.ts';
 import { isInPieceStrip } from '../geometry/strip.ts';
+import { lieAlong } from '../network/meetings.ts';
 import { closestPoints, type Line } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 import { endMeets } from './end-meets.ts';
@@ -110,7 +111,7 @@ class Overlaps {
       const i = pairA[k];
       const j = pairB[k];
       // Where two pieces cross, the network has a node by construction (network/meetings.ts): at nearly all places.
-      if (pairDistance[k] === 0 && !areParallel(pieces, i, j)) continue;
+      if (pairDistance[k] === 0 && !lieAlong(pieces, i, j)) continue;
       // The strip of a piece lies within half a width of it, whatever its ends.
       if (pairDistance[k] > pieces.half[i] + pieces.half[j]) continue;
       if (isOneStretch(pieces, i, j) || this.meetWhereNearest(i, j) || this.meetAnywhere(i, j)) continue;
@@ -326,14 +327,6 @@ class Overlaps {
     }
     return false;
   }
-}
-
-function areParallel(pieces: Pieces, i: number, j: number): boolean {
-  const ux = pieces.x2[i] - pieces.x1[i];
-  const uy = pieces.y2[i] - pieces.y1[i];
-  const vx = pieces.x2[j] - pieces.x1[j];
-  const vy = pieces.y2[j] - pieces.y1[j];
-  return Math.abs(ux * vy - uy * vx) <= 1e-9 * pieces.length[i] * pieces.length[j];
 }
 
 /** What the strips of two pieces have in common; null where they only touch, which thin-wall speaks of. */

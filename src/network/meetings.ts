@@ -21,10 +21,10 @@ export function markMeetings(draft: Draft): void {
   const { pairA, pairB, pairDistance } = near;
   for (let k = 0; k < near.pairCount; k++) {
     if (pairDistance[k] > slackMm) continue;
-    if (!markCrossing(draft, pairA[k], pairB[k])) {
-      markTouches(draft, pairA[k], pairB[k]);
-      markTouches(draft, pairB[k], pairA[k]);
-    }
+    const [i, j] = [pairA[k], pairB[k]];
+    const isAlong = lieAlong(draft.pieces, i, j);
+    if (isAlong && (markAllTouches(draft, i, j) || hasOpenEndBeside(draft, i, j))) continue;
+    if (!markCrossing(draft, i, j) && !isAlong) markAllTouches(draft, i, j);
   }
 }
 
@@ -48,6 +48,28 @@ function markCrossing(draft: Draft, i: number, j: number): boolean {
   if (!(s >= 0 && s <= 1 && t >= 0 && t <= 1)) return false;
   addMeeting(draft, i, s, j, t);
   return true;
+}
+
+/**
+ * Whether a stroke ends with one piece within the slack of the other. Of two pieces that lie on each other the place where
+ * they cross is little more than rounding (the error of a coordinate over the sine: 1e-4 mm and more). Where a vertex lies
+ * beside the other it tells the place; an end that does is joined by rule 3.
+ */
+function hasOpenEndBeside({ pieces, slackMm }: Draft, i: number, j: number): boolean {
+  const isBeside = (x: number, y: number, k: number): boolean =>
+    distanceToSegment(x, y, pieces.x1[k], pieces.y1[k], pieces.x2[k], pieces.y2[k]) <= slackMm;
+  const endsBeside = (k: number, other: number): boolean =>
+    (!startsAtVertex(pieces, k) && isBeside(pieces.x1[k], pieces.y1[k], other)) ||
+    (!endsAtVertex(pieces, k) && isBeside(pieces.x2[k], pieces.y2[k], other));
+  return endsBeside(i, j) || endsBeside(j, i);
+}
+
+/** Whether any vertex of one piece was found to touch the other. */
+function markAllTouches(draft: Draft, i: number, j: number): boolean {
+  const before = draft.marks.node.length;
+  markTouches(draft, i, j);
+  markTouches(draft, j, i);
+  return draft.marks.node.length > before;
 }
 
 /** Inner vertices of piece i that lie on piece j within slack. */
@@ -94,13 +116,18 @@ function isPassedOnCurve(
   const [before, after] = s === 0 ? [next, i] : [i, next];
   const isFineCut = pieces.chord[before] === pieces.chord[after];
   if (Math.hypot(awayX, awayY) <= ON_IT_MM) {
-    return isFineCut && Math.abs(sineBetween(pieces, i, j)) <= SAME_DIRECTION_SINE;
+    return isFineCut && lieAlong(pieces, i, j);
   }
   // Seen across piece j: its nearest point may be a vertex, though its curve goes on and passes nearer.
   const side = (pieces.x2[j] - pieces.x1[j]) * awayY - (pieces.y2[j] - pieces.y1[j]) * awayX;
   const arriving = side * sineBetween(pieces, j, before);
   const leaving = side * sineBetween(pieces, j, after);
   return isFineCut ? !(arriving < 0 && leaving > 0) : !(arriving <= 0 && leaving >= 0);
+}
+
+/** Whether two pieces run in one direction, but for rounding: where they meet they lie on each other, and need not cross. */
+export function lieAlong(pieces: Pieces, i: number, j: number): boolean {
+  return Math.abs(sineBetween(pieces, i, j)) <= SAME_DIRECTION_SINE;
 }
 
 function sineBetween(pieces: Pieces, i: number, j: number): number {

@@ -173,6 +173,7 @@ function findOverlap(
       const stop = byNode.stop[m];
       const line = stops.centreline[stop];
       if (line === c || !isOther(line)) continue;
+      if (line !== other && !isBesidePiece(draft, c, from, position, line)) continue;
       meets = true;
       const e = endAt(draft, stops, stop);
       if (e >= 0) otherEnd = e;
@@ -190,6 +191,23 @@ function findOverlap(
     return { position, why: 'overlap' };
   }
   return null;
+}
+
+/**
+ * Whether a line that meets an end piece at its join comes along it, rather than going on from there: another stroke of the
+ * channel that the piece runs along, which hangs on this one, is no reason to leave it out. A line within 15° of the piece
+ * is nearer to its middle than the join is; one that goes on is not.
+ */
+function isBesidePiece(draft: Draft, c: number, from: number, position: number, line: number): boolean {
+  const { pieces } = draft;
+  const middle = { x: 0, y: 0 };
+  pointAt(draft, c, (from + position) / 2, middle);
+  let nearest = Number.POSITIVE_INFINITY;
+  for (let i = pieces.firstPiece[line]; i < pieces.firstPiece[line + 1]; i++) {
+    const [x1, y1, x2, y2] = [pieces.x1[i], pieces.y1[i], pieces.x2[i], pieces.y2[i]];
+    nearest = Math.min(nearest, distanceToSegment(middle.x, middle.y, x1, y1, x2, y2));
+  }
+  return nearest <= Math.abs(position - from) / 4 + draft.slackMm;
 }
 
 /**

@@ -142,3 +142,67 @@ describe('a channel drawn as many strokes', () => {
     }
   });
 });
+
+describe('strokes end to end on one straight line', () => {
+  it('keep their length, whatever rounding makes of their directions', () => {
+    const random = randomFrom(7);
+    let worst = 0;
+    for (let k = 0; k < 1000; k++) {
+      const turn = random() * 2 * Math.PI;
+      const rounding = 10 ** -(9 + 5 * random());
+      const at = (along: number): [number, number] => [
+        20 + along * Math.cos(turn) + (random() - 0.5) * rounding,
+        20 + along * Math.sin(turn) + (random() - 0.5) * rounding,
+      ];
+      const spot = 1 + 7 * random();
+      const seam = at(spot);
+      const lines = [
+        [...at(0), ...seam],
+        [...at(9), ...(random() < 0.7 ? seam : at(spot))],
+      ];
+      const network = buildNetwork(chipOf([{ name: 'a', widthMm: 0.2, lines }]));
+      worst = Math.max(worst, Math.abs(network.reachDuctMm.reduce((sum, length) => sum + length, 0) - 9));
+    }
+    expect(worst).toBeLessThan(1e-8);
+  });
+});
+
+describe('a branch of small angle whose first bit is a stroke of its own', () => {
+  it('stays joined where the rest of it and the main are one path', () => {
+    const random = randomFrom(8);
+    for (let k = 0; k < 200; k++) {
+      const angle = ((6 + 8.5 * random()) * Math.PI) / 180;
+      const bit = (0.05 + 0.02 * random()) / Math.sin(angle) / 2;
+      const along = (t: number): [number, number] => [
+        Number((10 + t * Math.cos(angle)).toFixed(6)),
+        Number((10 + t * Math.sin(angle)).toFixed(6)),
+      ];
+      const tip = along(bit);
+      const far = along(8);
+      const main = [2, 10, 10, 10, 18, 10];
+      const first = [10, 10, ...tip];
+      const rest = [...far, ...tip];
+      const asOne: ChannelSpec[] = [
+        { name: 'all', widthMm: 0.15, lines: random() < 0.5 ? [rest, main] : [main, rest] },
+        { name: 'bit', widthMm: 0.15, lines: [random() < 0.5 ? first : [...tip, 10, 10]] },
+      ];
+      const apart: ChannelSpec[] = [
+        { name: 'main', widthMm: 0.15, lines: [main] },
+        { name: 'rest', widthMm: 0.15, lines: [rest] },
+        asOne[1],
+      ];
+      const ports: PortSpec[] = [
+        { name: 'a', x: 2, y: 10, radiusMm: 0.5 },
+        { name: 'b', x: 18, y: 10, radiusMm: 0.5 },
+        { name: 'c', x: far[0], y: far[1], radiusMm: 0.5 },
+      ];
+      for (const channels of [asOne, apart]) {
+        const network = buildNetwork(chipOf(channels, ports));
+        const total = network.reachDuctMm.reduce((sum, length) => sum + length, 0);
+        // Two arms of the main and the branch, each to its rim.
+        expect(total).toBeCloseTo(22.5, 4);
+        expect(network.nodeCount - network.reachCount).toBe(1);
+      }
+    }
+  });
+});

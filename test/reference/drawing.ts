@@ -1,6 +1,6 @@
 import { after, IDENTITY, inverse, isMirrored, mapped, type Similarity, scaleOf } from './map.ts';
 import { DENSITY_KG_M3, holeOf, type Part, type Plan, VISCOSITY_PA_S } from './plan.ts';
-import type { Point } from './points.ts';
+import { distance, type Point } from './points.ts';
 import type { Random } from './random.ts';
 import { type PlanStroke, randomStrokes } from './strokes.ts';
 
@@ -133,7 +133,9 @@ function subpaths(strokes: readonly PlanStroke[], random: Random): PlanStroke[][
 
 function channelElement(plan: Plan, strokes: readonly PlanStroke[], frame: Frame, random: Random): string {
   const { layer, widthMm } = strokes[0];
-  const style = `fill="none" stroke="#000" stroke-width="${widthMm * scaleOf(frame.toLocal)}"`;
+  // A hairline loop with a port beside its line, on the inner side, reads as an outline round that port unless it says what it is.
+  const isSaid = strokes.some(comesBack) && plan.nodes.some(({ port }) => port?.aside);
+  const style = `fill="none" stroke="#000" stroke-width="${widthMm * scaleOf(frame.toLocal)}"${isSaid ? ' data-channel=""' : ''}`;
   const isStraight = strokes.every(({ parts }) => parts.every(({ kind }) => kind === 'line'));
   const points = [strokes[0].start, ...strokes[0].parts.map(({ to }) => to)].map((p) => written(p, frame));
   let element: string;
@@ -153,6 +155,10 @@ function channelElement(plan: Plan, strokes: readonly PlanStroke[], frame: Frame
   );
   return `<g data-name="${plan.layers[layer].name}"${outer === '' ? '' : ` transform="${outer}"`}>${innermost}</g>`;
 }
+
+/** Drawn closed, or back to where it began. */
+const comesBack = ({ start, parts, isClosed }: PlanStroke): boolean =>
+  isClosed || distance(start, parts[parts.length - 1].to) < 2e-3;
 
 function pathData({ start, parts, isClosed }: PlanStroke, frame: Frame): string {
   const texts = parts.map((part, i) => {

@@ -33,10 +33,11 @@ export interface DuctPart {
 /**
  * The same network with all that the way of drawing may add taken away: ducts drawn shorter than `shortestMm` (what the
  * slack leaves between places that were meant to be one) join their nodes, and nodes where just two ducts meet are inner
- * points of one chain. A port stays a node.
+ * points of one chain. A port stays a node. Chains come first: a node where nothing branches takes no length from its duct,
+ * however near to another it stands.
  */
 export function simplified(graph: Graph, shortestMm: number): Graph {
-  return chained(contracted(graph, shortestMm));
+  return chained(contracted(chained(graph), shortestMm));
 }
 
 function contracted({ nodes, ducts }: Graph, shortestMm: number): Graph {

@@ -236,7 +236,9 @@ function carriedOn(
   const { l, line, first, nearest } = candidates.reduce((a, b) =>
     b.nearest.distance < a.nearest.distance ? b : a,
   );
-  const hit = ahead(end, lines[end.line], line, slack) ?? nearest;
+  // An end within the slack of the centreline has met it there (rule 2): however flat it comes, it is led to no place far ahead.
+  const reach = nearest.distance <= slack ? NEAR * slack : 2 * line.halfMm + slack;
+  const hit = ahead(end, lines[end.line], line, reach, slack) ?? nearest;
   return { line: l, s: first + hit.s, at: hit.at };
 }
 
@@ -282,14 +284,22 @@ function crossesBeforeEnd(member: End, s: number, lines: readonly Line[], strip:
   return nearestOn(at, strip.points).distance < 1e-9;
 }
 
-/** Where the end, carried on in its own direction, meets the centreline within that channel's width. */
-function ahead(end: End, own: Line, other: Line, slack: number): { s: number; at: Point } | null {
+/** Far enough to meet, at 15° and more, a centreline that is nearer than the slack. */
+const NEAR = 4;
+
+/** Where the end, carried on in its own direction, meets the centreline within reach. */
+function ahead(
+  end: End,
+  own: Line,
+  other: Line,
+  reach: number,
+  slack: number,
+): { s: number; at: Point } | null {
   const n = own.points.length;
   const u = end.atStart
     ? direction(own.points[1], own.points[0])
     : direction(own.points[n - 2], own.points[n - 1]);
-  const reach = 2 * other.halfMm;
-  const far = plus(end.at, u, reach + slack);
+  const far = plus(end.at, u, reach);
   const S = positions(other.points);
   let best: { s: number; at: Point; t: number } | null = null;
   for (let i = 1; i < other.points.length; i++) {

@@ -134,14 +134,18 @@ export function within(
   return common(common(common(beyond, short), disc(a, d, v, half)), [0, length]);
 }
 
-/** Where least ≤ x + t·by ≤ most. A line that runs along the border (to rounding) is inside. */
+/**
+ * Where least ≤ x + t·by ≤ most. A line that runs along the border (to rounding) is inside: where it is parallel but for the
+ * rounding of its direction, the place where it crosses the border is rounding too.
+ */
 function slab(x: number, by: number, least: number, most: number): readonly [number, number] | null {
+  const margin = Math.abs(by) < 1e-8 ? 1e-9 : 0;
   if (Math.abs(by) < 1e-12) {
-    return x >= least - 1e-9 && x <= most + 1e-9
+    return x >= least - margin && x <= most + margin
       ? [Number.NEGATIVE_INFINITY, Number.POSITIVE_INFINITY]
       : null;
   }
-  const [t, u] = [(least - x) / by, (most - x) / by];
+  const [t, u] = [(least - margin - x) / by, (most + margin - x) / by];
   return by > 0 ? [t, u] : [u, t];
 }
 

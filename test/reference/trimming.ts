@@ -3,6 +3,7 @@ import {
   firstLeaves,
   type Line,
   lengthOf,
+  nearestOn,
   pointAt,
   type StripPiece,
   stretch,
@@ -10,7 +11,7 @@ import {
   wedge,
 } from './line.ts';
 import { type End, type Hole, isSameDuct, type Kept, type Node, placesOn } from './places.ts';
-import { distance, type Point } from './points.ts';
+import { cross, direction, distance, dot, minus, type Point, plus } from './points.ts';
 
 /** Rules 5 and 7: stretches between neighbouring nodes, with their duct lengths. */
 export function graphOf(
@@ -29,7 +30,7 @@ export function graphOf(
   for (const thread of threads) {
     const { path, places, closed, spans } = thread;
     const length = lengthOf(path);
-    const cuts = cutsOn(thread, threads, bundles, kept, slack);
+    const cuts = cutsOn(thread, threads, nodes, bundles, kept, slack);
     const add = (from: number, to: number, runs: readonly (readonly [number, number])[]) => {
       const parts = runs.flatMap(([s, t]) => partsOf(spans, s, t, cuts));
       const drawnMm = runs.reduce((sum, [s, t]) => sum + t - s, 0);
@@ -67,6 +68,8 @@ interface Thread {
   readonly spans: readonly { readonly to: number; readonly line: Line }[];
   /** Which drawn end lies at the start and at the end. */
   readonly ends: readonly [string, string];
+  /** Whether the first and the last piece was carried on, and not in the drawn direction. */
+  readonly asides: readonly [boolean, boolean];
 }
 
 interface ThreadPlace {
@@ -125,10 +128,23 @@ function threadOf(one: Kept, l: number, nodes: readonly Node[], slack: number): 
       })),
     spans: [{ to: lengthOf(path), line }],
     ends: line.closed ? ['', ''] : [endKey({ line: l, atStart: true }), endKey({ line: l, atStart: false })],
+    asides: [
+      one.before !== null && least < 0 && isAside(line.points[1], line.points[0], one.before, slack),
+      one.after !== null &&
+        most > one.length &&
+        isAside(line.points.at(-2)!, line.points.at(-1)!, one.after, slack),
+    ],
   };
 }
 
-function turned({ path, places, spans, ends, ...rest }: Thread): Thread {
+/** Whether the way from the end of a stroke to where it was carried on leaves the drawn direction. */
+function isAside(inner: Point, end: Point, tip: Point, slack: number): boolean {
+  const u = direction(inner, end);
+  const v = minus(tip, end);
+  return dot(u, v) <= 0 || Math.abs(cross(u, v)) > slack;
+}
+
+function turned({ path, places, spans, ends, asides, ...rest }: Thread): Thread {
   const length = lengthOf(path);
   return {
     ...rest,
@@ -136,6 +152,7 @@ function turned({ path, places, spans, ends, ...rest }: Thread): Thread {
     places: places.map(({ node, from, to }) => ({ node, from: length - to, to: length - from })).reverse(),
     spans: spans.map(({ line }, i) => ({ to: length - (i === 0 ? 0 : spans[i - 1].to), line })).reverse(),
     ends: [ends[1], ends[0]],
+    asides: [asides[1], asides[0]],
   };
 }
 
@@ -155,6 +172,7 @@ function sewnPair(a: Thread, b: Thread, near: number): Thread {
     ],
     spans: [...a.spans, ...b.spans.map(({ to, line }) => ({ to: to + shift, line }))],
     ends: [a.ends[0], b.ends[1]],
+    asides: [a.asides[0], b.asides[1]],
   };
 }
 
@@ -187,6 +205,7 @@ interface Cut {
 function cutsOn(
   thread: Thread,
   threads: readonly Thread[],
+  nodes: readonly Node[],
   bundles: readonly (readonly End[])[],
   kept: readonly Kept[],
   slack: number,
@@ -202,7 +221,7 @@ function cutsOn(
         if (own.plane !== line.plane || isSameDuct(own, line)) return [];
         const factor = Math.min(1, own.widthMm / line.widthMm) * Math.min(1, own.depthMm / line.depthMm) ** 3;
         if (factor === 1) return [];
-        const strips = oneStrip(other, threads, bundles, kept, slack);
+        const strips = oneStrip(other, threads, nodes, bundles, kept, slack);
         const walk = (s: number, t: number) =>
           Math.abs(t - s) <= slack ? 0 : firstLeaves(around(path, closed, s, t), strips, slack);
         const back = walk(from, closed ? from - length : 0);
@@ -233,6 +252,7 @@ function around(path: readonly Point[], closed: boolean, s: number, t: number): 
 function oneStrip(
   first: Thread,
   threads: readonly Thread[],
+  nodes: readonly Node[],
   bundles: readonly (readonly End[])[],
   kept: readonly Kept[],
   slack: number,
@@ -242,7 +262,11 @@ function oneStrip(
   const inner = ({ line, atStart }: End) => kept[line].line.points.at(atStart ? 1 : -2)!;
   for (const thread of group) {
     const { line } = thread.spans[0];
-    pieces.push(...stripOf(withoutShortTails(thread, slack), thread.closed, line.halfMm));
+    pieces.push(
+      ...stripOf(etchedPath(thread, slack), thread.closed, line.halfMm).map((piece) =>
+        ownWidth(piece, thread),
+      ),
+    );
     for (const bundle of bundles) {
       for (const end of bundle.filter((one) => thread.lines.includes(one.line))) {
         for (const other of bundle) {
@@ -254,6 +278,8 @@ function oneStrip(
       }
     }
     for (const end of nodesAtEnds(thread)) {
+      // What lies in a well is the port's: ends there stand apart, and meet nobody's end.
+      if (nodes[end.node].hole !== null) continue;
       for (const theirs of threads) {
         if (theirs.spans[0].line.plane !== line.plane || !isSameDuct(theirs.spans[0].line, line)) continue;
         for (const other of nodesAtEnds(theirs)) {
@@ -265,6 +291,14 @@ function oneStrip(
     }
   }
   return pieces;
+}
+
+/** Sewn ducts may differ by 1e-6 in width: each piece has its own walls. */
+function ownWidth(piece: StripPiece, { spans }: Thread): StripPiece {
+  if (spans.every(({ line }) => line.halfMm === spans[0].line.halfMm)) return piece;
+  const at = piece.kind === 'wedge' ? piece.v : plus(piece.p, piece.u, piece.length / 2);
+  const away = spans.map(({ line }) => nearestOn(at, line.points).distance);
+  return { ...piece, half: spans[away.indexOf(Math.min(...away))].line.halfMm };
 }
 
 /** The nodes that a thread ends at, and which way it comes. */
@@ -279,12 +313,19 @@ function nodesAtEnds({ path, closed, places }: Thread): { node: number; at: Poin
   ];
 }
 
-/** What was carried on for less than the slack says nothing of where a strip ends or which way it points. */
-function withoutShortTails({ path, closed }: Thread, slack: number): readonly Point[] {
-  if (closed || path.length < 3) return path;
-  const first = distance(path[0], path[1]) <= 2 * slack ? 1 : 0;
-  const last = distance(path[path.length - 2], path[path.length - 1]) <= 2 * slack ? 1 : 0;
-  return path.length - first - last < 2 ? path : path.slice(first, path.length - last);
+/**
+ * The path that the strip runs along: an end carried on in its own direction with what was carried on, one carried on
+ * aside as it was drawn. Pieces shorter than the slack (the gap at a seam, what was carried on to a centreline that the
+ * end was drawn to) say nothing of where a strip ends or which way it points.
+ */
+function etchedPath({ path, closed, asides }: Thread, slack: number): readonly Point[] {
+  if (closed) return path;
+  const drawn = path.slice(asides[0] ? 1 : 0, asides[1] ? -1 : undefined);
+  if (drawn.length < 3) return drawn;
+  const first = distance(drawn[0], drawn[1]) <= 2 * slack ? 1 : 0;
+  const last = distance(drawn[drawn.length - 2], drawn[drawn.length - 1]) <= 2 * slack ? 1 : 0;
+  const whole = drawn.length - first - last < 2 ? drawn : drawn.slice(first, drawn.length - last);
+  return whole.filter((p, i) => i === 0 || i === whole.length - 1 || distance(p, whole[i - 1]) > slack);
 }
 
 /** The ducts between two positions, one for each span. */
