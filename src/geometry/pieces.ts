@@ -1,4 +1,3 @@
-import type { Channel } from '../chip/types.ts';
 import { type Curve, departure, directionAtEnd, FINE_MM } from './curve.ts';
 
 /**
@@ -41,8 +40,20 @@ export interface Pieces {
   readonly plane: Int32Array;
 }
 
+/** What pieces are made of: a channel's centrelines (mm), how far its strip reaches to either side, and its plane. */
+export interface StripSource {
+  readonly plane: number;
+  readonly stripHalfWidthMm: number;
+  readonly centrelines: readonly {
+    readonly points: Float64Array;
+    readonly closed: boolean;
+    readonly bendRadius: Float64Array;
+    readonly curves: readonly (Curve | null)[] | null;
+  }[];
+}
+
 /** Lays all centrelines out in columns. Cost: linear in the number of points. */
-export function toPieces(channels: readonly Channel[]): Pieces {
+export function toPieces(channels: readonly StripSource[]): Pieces {
   let centrelineCount = 0;
   let count = 0;
   for (const channel of channels) {
