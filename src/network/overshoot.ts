@@ -334,18 +334,18 @@ function isAlong(
   const { pieces } = draft;
   const at = { x: 0, y: 0 };
   pointAt(draft, c, s, at);
-  let best = Number.POSITIVE_INFINITY;
-  let sine = 1;
-  for (const j of stretch.near) {
-    if (pieces.centreline[j] === c || !isOther(pieces.centreline[j])) continue;
-    const distance = distanceToSegment(at.x, at.y, pieces.x1[j], pieces.y1[j], pieces.x2[j], pieces.y2[j]);
-    if (distance >= best) continue;
-    best = distance;
+  const others = stretch.near.filter((j) => pieces.centreline[j] !== c && isOther(pieces.centreline[j]));
+  const distanceTo = (j: number): number =>
+    distanceToSegment(at.x, at.y, pieces.x1[j], pieces.y1[j], pieces.x2[j], pieces.y2[j]);
+  const best = others.reduce((least, j) => Math.min(least, distanceTo(j)), Number.POSITIVE_INFINITY);
+  // At a corner of the other both its legs are as near, to within rounding: one that runs along is enough.
+  const isAlong = (j: number): boolean => {
     const vx = pieces.x2[j] - pieces.x1[j];
     const vy = pieces.y2[j] - pieces.y1[j];
-    sine = Math.abs((stretch.ux * vy - stretch.uy * vx) / pieces.length[j]);
-  }
-  if (best <= within + draft.slackMm && sine <= MOST_SINE) return true;
+    return Math.abs((stretch.ux * vy - stretch.uy * vx) / pieces.length[j]) <= MOST_SINE;
+  };
+  const isNear = (j: number): boolean => distanceTo(j) <= best + draft.slackMm && isAlong(j);
+  if (best <= within + draft.slackMm && others.some(isNear)) return true;
   return runsAlongExtension(draft, stretch, at, carriedEnd, within);
 }
 
