@@ -173,7 +173,7 @@ function findOverlap(
       const stop = byNode.stop[m];
       const line = stops.centreline[stop];
       if (line === c || !isOther(line)) continue;
-      if (line !== other && !isBesidePiece(draft, c, from, position, line)) continue;
+      if (line !== other && !isBesidePiece(draft, c, from, position, line, stops.from[stop])) continue;
       meets = true;
       const e = endAt(draft, stops, stop);
       if (e >= 0) otherEnd = e;
@@ -198,16 +198,34 @@ function findOverlap(
  * channel that the piece runs along, which hangs on this one, is no reason to leave it out. A line within 15° of the piece
  * is nearer to its middle than the join is; one that goes on is not.
  */
-function isBesidePiece(draft: Draft, c: number, from: number, position: number, line: number): boolean {
+function isBesidePiece(
+  draft: Draft,
+  c: number,
+  from: number,
+  position: number,
+  line: number,
+  joinAt: number,
+): boolean {
   const { pieces } = draft;
+  const span = Math.abs(position - from);
   const middle = { x: 0, y: 0 };
   pointAt(draft, c, (from + position) / 2, middle);
-  let nearest = Number.POSITIVE_INFINITY;
-  for (let i = pieces.firstPiece[line]; i < pieces.firstPiece[line + 1]; i++) {
-    const [x1, y1, x2, y2] = [pieces.x1[i], pieces.y1[i], pieces.x2[i], pieces.y2[i]];
-    nearest = Math.min(nearest, distanceToSegment(middle.x, middle.y, x1, y1, x2, y2));
-  }
-  return nearest <= Math.abs(position - from) / 4 + draft.slackMm;
+  // Along the piece it is as long as the piece, but for 15°: what is further along it is not looked at.
+  const total = pieces.centrelineLength[line];
+  const rounds = pieces.centrelineClosed[line] === 1 ? [-total, 0, total] : [0];
+  return rounds.some((shift) => {
+    const low = Math.max(0, joinAt + shift - 2 * span - draft.slackMm);
+    const high = joinAt + shift + 2 * span + draft.slackMm;
+    for (
+      let i = pieceAt(pieces, line, low);
+      i < pieces.firstPiece[line + 1] && pieces.start[i] <= high;
+      i++
+    ) {
+      const [x1, y1, x2, y2] = [pieces.x1[i], pieces.y1[i], pieces.x2[i], pieces.y2[i]];
+      if (distanceToSegment(middle.x, middle.y, x1, y1, x2, y2) <= span / 4 + draft.slackMm) return true;
+    }
+    return false;
+  });
 }
 
 /**
