@@ -1,13 +1,9 @@
-import { assembleChip } from './chip/assemble.ts';
-import type { Chip } from './chip/types.ts';
+import { type Assembled, assembleChip } from './chip/assemble.ts';
+import type { Chip, Run } from './chip/types.ts';
 import { findAll } from './findings/check.ts';
-import { pumpLimitRule } from './findings/pump-limit.ts';
-import type { Rule } from './findings/rule.ts';
-import { RULES } from './findings/rules.ts';
 import type { FindingReport } from './findings/types.ts';
 import type { Layout } from './layout/types.ts';
-import { isDrawnAlike } from './network/alike.ts';
-import { buildNetwork } from './network/build.ts';
+import { networkOf } from './network/alike.ts';
 import type { Network } from './network/types.ts';
 import type { RunSheet } from './runsheet/types.ts';
 import { drivesOf } from './solve/drives.ts';
@@ -19,6 +15,7 @@ import type { FlowState } from './solve/types.ts';
 /** A layout under one run sheet (or one of its cases), joined, solved and judged. */
 export interface Analysis {
   readonly chip: Chip;
+  readonly run: Run;
   readonly network: Network;
   readonly flow: FlowState;
   readonly findings: FindingReport;
@@ -47,13 +44,8 @@ export type OnStage = (stage: string) => Promise<void>;
  * Errors: InputError where the run sheet and the layout do not fit each other, or a size limit is passed.
  */
 export async function analyse(input: AnalysisInput, onStage: OnStage = async () => {}): Promise<Analysis> {
-  const chip = assembleChip(input);
-  await onStage('joining channels');
-  return judge(networkOf(chip, input.alike), RULES, onStage);
-}
-
-function networkOf(chip: Chip, alike: Network | undefined): Network {
-  return alike !== undefined && isDrawnAlike(alike.chip, chip) ? { ...alike, chip } : buildNetwork(chip);
+  const { network, run } = await join(input, onStage);
+  return judge(network, run, onStage);
 }
 
 /**
@@ -65,36 +57,34 @@ export async function analysePump(
   input: AnalysisInput,
   onStage: OnStage = async () => {},
 ): Promise<{ readonly analysis: Analysis; readonly settings: FoundSettings }> {
-  const drawn = assembleChip(input);
-  await onStage('joining channels');
-  const joined = networkOf(drawn, input.alike);
+  const { network, run } = await join(input, onStage);
   await onStage('finding settings');
-  const settings = findSettings(joined);
-  const ports = drawn.ports.map((port, i) => ({ ...port, condition: settings.conditions[i] }));
-  const network = { ...joined, chip: { ...drawn, ports } };
-  const rules = RULES.map((rule) => (rule.names.includes('pump-limit') ? pumpLimitRule(settings) : rule));
-  return { analysis: await judge(network, rules, onStage, settings.flow), settings };
+  const settings = findSettings({ network, run });
+  const ports = run.ports.map((port, i) => ({ ...port, condition: settings.conditions[i] }));
+  return { analysis: await judge(network, { ...run, ports }, onStage, settings), settings };
 }
 
-/** Solves a network (unless its flow is known already) and runs the rules on it. */
-async function judge(
-  network: Network,
-  rules: readonly Rule[],
-  onStage: OnStage,
-  known?: FlowState,
-): Promise<Analysis> {
+async function join(input: AnalysisInput, onStage: OnStage): Promise<{ network: Network; run: Run }> {
+  const { chip, run }: Assembled = assembleChip(input);
+  await onStage('joining channels');
+  return { network: networkOf(chip, input.alike), run };
+}
+
+/** Solves a network (unless settings were found, and its flow with them) and runs the rules on it. */
+async function judge(network: Network, run: Run, onStage: OnStage, found?: FoundSettings): Promise<Analysis> {
   const { chip } = network;
   await onStage('solving flows');
-  const drives = drivesOf(chip);
-  const factor = factorFlow(prepareFlow(network), kindsOf(drives));
-  const flow = known ?? flowStateOf(factor, drives);
+  const drives = drivesOf(run);
+  const factor = factorFlow(prepareFlow(network, run), kindsOf(drives));
+  const flow = found?.flow ?? flowStateOf(factor, drives);
   await onStage('checking rules');
   return {
     chip,
+    run,
     network,
     flow,
-    findings: findAll({ chip, network, flow }, rules),
-    jointShares: jointShares(network, factor, drives, flow),
+    findings: findAll({ chip, run, network, flow, ...(found === undefined ? {} : { found }) }),
+    jointShares: jointShares({ network, run }, factor, drives, flow),
     centrelineFlow: () => centrelineFlow(network, factor, drives),
   };
 }

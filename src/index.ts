@@ -11,10 +11,13 @@ export type {
   Chip,
   ChipEdge,
   ChipLayer,
-  ChipLimits,
   Fluid,
+  Limits,
+  Mixture,
   Port,
+  PortRun,
   ReadingFault,
+  Run,
 } from './chip/types.ts';
 export { type DraftInput, draftRunSheet } from './draft/draft.ts';
 export { InputError } from './errors.ts';

@@ -136,7 +136,7 @@ async function spreadCase(
     return {
       name,
       analysis,
-      spread: await spreadOf(analysis.network, tolerances, options, paceOf(io, shown)),
+      spread: await spreadOf(analysis, tolerances, options, paceOf(io, shown)),
     };
   } finally {
     shown?.done();
@@ -164,8 +164,8 @@ function withTolerances({ name, sheet }: SheetCase, file: string): VaryingCase {
   throw new InputError(file, `tolerances: there are none${inCase(name)}; ${EXAMPLE}`);
 }
 
-function refuseNothingToVary({ network }: Analysis, { name, sheet, tolerances, file }: VaryingCase): void {
-  const idle = whyNoSpread(network, tolerances);
+function refuseNothingToVary(analysis: Analysis, { name, sheet, tolerances, file }: VaryingCase): void {
+  const idle = whyNoSpread(analysis, tolerances);
   if (idle === null) return;
   const line = sheet.lineOf(['tolerances']);
   throw new InputError(

@@ -26,7 +26,7 @@ const MOST_BYTES = 900_000;
  * @throws InputError as assembleChip, for a layout that nothing can be made of
  */
 export function draftRunSheet({ layout, file, tool }: DraftInput): string {
-  const chip = assembleChip({ layout, sheet: null, file, layoutSha256: '0'.repeat(64) });
+  const { chip } = assembleChip({ layout, sheet: null, file, layoutSha256: '0'.repeat(64) });
   const groupsOf = groupsByOrdinal(layout);
   const fields = pillarFields(chip);
   const layers = layerLines(chip, groupsOf);

@@ -1,3 +1,4 @@
+import { minWallM } from '../chip/limits.ts';
 import type { Chip } from '../chip/types.ts';
 import { type Arcs, toArcs } from './arcs.ts';
 import type { Bundles } from './bundles.ts';
@@ -8,7 +9,7 @@ import { isEqualDuct } from './equal-ducts.ts';
 import { JointTally } from './joint-types.ts';
 import type { Kept } from './kept.ts';
 import { markMeetings } from './meetings.ts';
-import { nameNodes, nameReach, nameSegment } from './names.ts';
+import { numberOfKind } from './names.ts';
 import { findNearPieces } from './near-pieces.ts';
 import { classifyNodes, type NodeJoints } from './node-joints.ts';
 import { leaveOutEndPieces } from './overshoot.ts';
@@ -61,7 +62,7 @@ function nearnessMm(chip: Chip): number {
   let wall = 0;
   const add = (depthM: number): void => {
     const known = Number.isNaN(depthM) ? 0 : depthM;
-    wall = Math.max(wall, (chip.limits.minWallM(known)?.value ?? 0) * 1e3);
+    wall = Math.max(wall, (minWallM(chip, known)?.value ?? 0) * 1e3);
     if (chip.process === 'cast elastomer') wall = Math.max(wall, known * 500);
   };
   for (const layer of chip.layers) add(layer.depthM);
@@ -124,9 +125,6 @@ function toNetwork(
   const { nodeX, nodeY } = placeNodes(draft, arcs, index, nodePort);
   const ductMm = chip.joints === 'resolved' ? reaches.resolvedMm : reaches.byRuleMm;
   const segments = reaches.segments;
-  const names = nameNodes(chip, nodeKind, nodePort);
-  const reachColumns = { reachChannel: reaches.channel, reachNumber, channelReachCount };
-  const firstSegment = reaches.firstSegment;
   return {
     chip,
     nodeCount: index.count,
@@ -134,9 +132,12 @@ function toNetwork(
     nodeX,
     nodeY,
     nodePort,
+    nodeNumber: numberOfKind(nodeKind),
     portNode,
     reachCount: reaches.count,
-    ...reachColumns,
+    reachChannel: reaches.channel,
+    reachNumber,
+    channelReachCount,
     reachFrom,
     reachTo,
     reachDrawnMm: reaches.drawnMm,
@@ -145,7 +146,7 @@ function toNetwork(
     reachJointBoundMm: joints.boundMm,
     reachCentrelineMm: reaches.byRuleMm,
     joints: tally.summaries(),
-    firstSegment,
+    firstSegment: reaches.firstSegment,
     segmentCount: segments.count,
     segmentReach: new Int32Array(segments.reach),
     segmentX1: new Float64Array(segments.x1),
@@ -155,9 +156,6 @@ function toNetwork(
     segmentDuctMm: new Float64Array(segments.ductMm),
     segmentBendRadiusMm: new Float64Array(segments.bendRadius),
     trace: toTrace(),
-    nodeName: names,
-    reachName: (reach) => nameReach(chip, reachColumns, reach),
-    segmentName: (segment) => nameSegment(chip, reachColumns, firstSegment, segments.reach, segment),
   };
 
   function toTrace(): Network['trace'] {

@@ -1,3 +1,4 @@
+import type { Run } from '../chip/types.ts';
 import type { FindingReport } from '../findings/types.ts';
 import type { Network } from '../network/types.ts';
 import { type Show, showOf } from '../runsheet/shown.ts';
@@ -12,6 +13,7 @@ export interface ReportedCase {
   readonly name: string | null;
   readonly part: CasePart;
   readonly network: Network;
+  readonly run: Run;
   readonly flow: FlowState;
   readonly findings: FindingReport;
   readonly show: Show;
@@ -60,14 +62,15 @@ export function buildCasesReport(
 }
 
 function reportedCase(name: string | null, input: ResultInput, part: CasePart): ReportedCase {
-  const { network, flow, findings, chip } = input;
+  const { network, run, flow, findings } = input;
   return {
     name,
     part,
     network,
+    run,
     flow,
     findings,
-    show: showOf(chip.sheet?.show ?? null),
+    show: showOf(run.sheet?.show ?? null),
     centrelineFlow: input.centrelineFlow ?? null,
   };
 }

@@ -1,3 +1,4 @@
+import { reachName } from '../../src/network/names.ts';
 import { describe, expect, it } from 'vitest';
 import { solveFlow } from '../../src/solve/flow-state.ts';
 import { drawing, networkFrom } from '../solve/network-from.ts';
@@ -31,7 +32,7 @@ function levelFindings(ports: Readonly<Record<string, string>>, windowed: readon
 function flowOf(channel: string, ports: Readonly<Record<string, string>>): number {
   const network = networkFrom(SVG, sheet(ports, []));
   const reach = Array.from({ length: network.reachCount }, (_, r) => r).find(
-    (r) => network.reachName(r) === channel,
+    (r) => reachName(network, r) === channel,
   );
   return solveFlow(network).reachFlow[reach ?? -1];
 }

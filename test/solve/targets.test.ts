@@ -1,3 +1,4 @@
+import { reachName } from '../../src/network/names.ts';
 import { lusolve } from 'mathjs';
 import { describe, expect, it } from 'vitest';
 import { ductForm } from '../../src/physics/duct.ts';
@@ -111,7 +112,7 @@ describe('findSettings', () => {
     );
     const { targets, flow } = findSettings(network);
     expect(rel(flow.portPressure[0], 2000)).toBeLessThan(1e-12);
-    const reach = [0, 1, 2, 3, 4].find((r) => network.reachName(r) === 'in-2') ?? -1;
+    const reach = [0, 1, 2, 3, 4].find((r) => reachName(network, r) === 'in-2') ?? -1;
     const volume = 0.2e-3 * 80e-6 * ((network.reachDuctMm[reach] - network.reachJointMm[reach]) / 1e3);
     expect(rel(volume / Math.abs(flow.reachFlow[reach]), 3)).toBeLessThan(1e-12);
     expect(rel(targets[2].reached, 700)).toBeLessThan(1e-12);
@@ -124,7 +125,7 @@ describe('findSettings', () => {
       'depth: 80 um\nports: { a: open, b: open, c: open }\ntargets:\n  - { channel: side, residence_time: 4 s, by: c }',
     );
     const { flow, targets } = findSettings(network);
-    const [reach] = [0, 1, 2].filter((r) => network.reachName(r) === 'side');
+    const [reach] = [0, 1, 2].filter((r) => reachName(network, r) === 'side');
     expect(network.reachJointMm[reach]).not.toBe(0);
     const room = (network.reachDuctMm[reach] - network.reachJointMm[reach]) / 1e3;
     expect(rel((0.2e-3 * 80e-6 * room) / Math.abs(flow.reachFlow[reach]), 4)).toBeLessThan(1e-12);
@@ -368,7 +369,7 @@ function denseBridge(
   foundFlow: Float64Array,
 ): { pressure: number; flow: number } {
   const { reach, tubing } = nominalResistances(network);
-  const r = (name: string): number => [0, 1, 2, 3, 4].map((i) => network.reachName(i)).indexOf(name);
+  const r = (name: string): number => [0, 1, 2, 3, 4].map((i) => reachName(network, i)).indexOf(name);
   const g = (name: string): number => 1 / reach[r(name)];
   const { viscosityPaS } = network.chip.fluid;
   const form = ductForm(0.2e-3, 80e-6);

@@ -1,3 +1,4 @@
+import { reachName } from '../../src/network/names.ts';
 import { sectionForm } from '../../src/physics/section.ts';
 import { solveFlow } from '../../src/solve/flow-state.ts';
 import { randomFrom } from '../solve/graphs.ts';
@@ -94,7 +95,7 @@ tolerances: { depth: ${between(1, 6).toFixed(2)} %, width${chance(0.5) ? '' : '_
               ? `residence_time: ${chance(0.5) ? '10 s' : values.residence_time}`
               : `velocity: ${chance(0.5) ? '1 mm/s' : values.velocity}`;
       targets.push(
-        `  - { channel: ${drawnName}, reach: "${network.reachName(reach)}", ${quantity}, by: ${by} }`,
+        `  - { channel: ${drawnName}, reach: "${reachName(network, reach)}", ${quantity}, by: ${by} }`,
       );
     }
   }

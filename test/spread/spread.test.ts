@@ -1,3 +1,4 @@
+import { reachName } from '../../src/network/names.ts';
 import { expect, test } from 'vitest';
 import { ductForm } from '../../src/physics/duct.ts';
 import { acceptedLimits } from '../../src/spread/accepted.ts';
@@ -103,7 +104,7 @@ test('the nominal numbers are those of the check itself', async () => {
   const { model, outputs } = modelOf({ network, tolerances });
   for (const output of outputs) {
     if (output.quantity !== 'flow' || output.on !== 'reach') continue;
-    const reach = [0, 1].find((r) => network.reachName(r) === output.name) ?? -1;
+    const reach = [0, 1].find((r) => reachName(network, r) === output.name) ?? -1;
     expect(outputValue(output, model, model.nominalState)).toBe(Math.abs(model.nominal.reachFlow[reach]));
   }
 });
