@@ -56,6 +56,7 @@ export function assembleChip({ layout, sheet: written, file, layoutSha256 }: Chi
   // also of strokes that turn out to be no channel: their keys have matched
   for (const name of drawn.drawnNames) settings.of(name);
   const ports = readPorts(holes, unitMm, sheet, limits.portDiameterM.value, file, setAside, conditions);
+  const portRuns = ports.ports.map((port) => portRun(port, conditions));
   if (sheet !== null) {
     sheet = withTargetsNamed(sheet, drawn.drawnNames, ports.drawnNames);
     const names = {
@@ -115,7 +116,7 @@ export function assembleChip({ layout, sheet: written, file, layoutSha256 }: Chi
   };
   const run: Run = {
     fluid,
-    ports: ports.ports.map((port) => portRun(port, conditions)),
+    ports: portRuns,
     channels: channels.map(({ drawnName }) => (drawnName === null ? null : settings.of(drawnName))),
     limits,
     accept: sheet?.accept ?? [],
