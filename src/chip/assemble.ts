@@ -23,7 +23,6 @@ export interface ChipInput {
   readonly sheet: RunSheet | null;
   /** The layout's file name, for messages about the drawing. */
   readonly file: string;
-  readonly layoutSha256: string;
 }
 
 /** A chip and how it is run; both are needed for a flow. */
@@ -38,7 +37,7 @@ export interface Assembled {
  * Cost: n log n in the number of drawn shapes.
  * @throws InputError for a name that the drawing lacks, a contradiction between the two, or a value nobody can compute with
  */
-export function assembleChip({ layout, sheet: written, file, layoutSha256 }: ChipInput): Assembled {
+export function assembleChip({ layout, sheet: written, file }: ChipInput): Assembled {
   let sheet = written;
   const joints = sheet?.joints ?? DEFAULT_JOINTS;
   const fluid = resolveFluid(sheet);
@@ -93,7 +92,6 @@ export function assembleChip({ layout, sheet: written, file, layoutSha256 }: Chi
   const resize = unitMm / layout.unitMm;
   const chip: Chip = {
     file,
-    layoutSha256,
     unitMm,
     unitReason: scale.reason,
     widthMm: layout.widthMm === null ? null : layout.widthMm * resize,

@@ -178,7 +178,6 @@ export type ReadingFault =
 export interface Chip {
   /** The layout's file name as given, without folders. */
   readonly file: string;
-  readonly layoutSha256: string;
   readonly unitMm: number;
   readonly unitReason: string;
   /** Size of the drawing (viewport) in mm. */

@@ -5,7 +5,7 @@ import { type Show, showOf } from '../runsheet/shown.ts';
 import type { FoundSettings } from '../solve/targets.ts';
 import type { FlowState } from '../solve/types.ts';
 import type { Spread } from '../spread/types.ts';
-import { buildCasesResult, buildResult, type CasePart, type Result, type ResultInput } from './result.ts';
+import { buildResult, type CaseInput, type CasePart, type ReportInput, type Result } from './result.ts';
 
 /** One case with everything that its pages, pictures and summary are drawn from. */
 export interface ReportedCase {
@@ -39,30 +39,21 @@ export function casesLeftOut({ cases, sheetCases }: Pick<Report, 'cases' | 'shee
   return sheetCases.filter((name) => !seen.has(name));
 }
 
-/** Report of a layout without cases. */
-export function buildReport(input: ResultInput): Report {
+/** The report of a layout under its cases, in the order given. */
+export function buildReport(input: ReportInput): Report {
   const result = buildResult(input);
-  return { result, cases: [reportedCase(null, input, result)], sheetCases: [] };
-}
-
-/**
- * Report of a layout under several cases, in the order given.
- * @param sheetCases names of all cases of the run sheet, where not all are reported
- */
-export function buildCasesReport(
-  cases: readonly { readonly name: string; readonly input: ResultInput }[],
-  sheetCases: readonly string[] = cases.map(({ name }) => name),
-): Report {
-  const result = buildCasesResult(cases);
+  const parts = 'cases' in result ? result.cases : [result];
   return {
     result,
-    cases: cases.map(({ name, input }, i) => reportedCase(name, input, result.cases[i])),
-    sheetCases,
+    cases: input.cases.map((one, i) => reportedCase(one, parts[i])),
+    sheetCases: input.sheet?.cases.map(({ name }) => name) ?? [],
   };
 }
 
-function reportedCase(name: string | null, input: ResultInput, part: CasePart): ReportedCase {
-  const { network, run, flow, findings } = input;
+function reportedCase(
+  { name, network, run, flow, findings, centrelineFlow, found, spread }: CaseInput,
+  part: CasePart,
+): ReportedCase {
   return {
     name,
     part,
@@ -71,6 +62,8 @@ function reportedCase(name: string | null, input: ResultInput, part: CasePart): 
     flow,
     findings,
     show: showOf(run.sheet?.show ?? null),
-    centrelineFlow: input.centrelineFlow ?? null,
+    centrelineFlow: centrelineFlow ?? null,
+    ...(found === undefined ? {} : { pump: found }),
+    ...(spread === undefined ? {} : { spread }),
   };
 }

@@ -3,10 +3,14 @@ import type { FindingReport } from '../findings/types.ts';
 import { nodeName, reachName, segmentName } from '../network/names.ts';
 import { type Network, NODE_KINDS } from '../network/types.ts';
 import { tubeVolume } from '../physics/tube.ts';
+import type { RunSheet } from '../runsheet/types.ts';
 import type { RunNetwork } from '../solve/flow-network.ts';
 import type { JointShares } from '../solve/joint-share.ts';
+import type { FoundSettings } from '../solve/targets.ts';
 import type { FlowState } from '../solve/types.ts';
+import type { Spread } from '../spread/types.ts';
 import { RESULT_VERSION } from '../version.ts';
+import { pumpPartOf } from './pump-part.ts';
 import type {
   BalanceRow,
   CountsRow,
@@ -25,6 +29,7 @@ import type {
 } from './result-rows.ts';
 import { type Rows, rows } from './rows.ts';
 import { sectionCache } from './section-values.ts';
+import { spreadPartOf } from './spread-part.ts';
 
 /** What one case adds: everything but tool, layout and run sheet. Keys and their order are those of the JSON document. */
 export interface CasePart {
@@ -58,50 +63,58 @@ export interface CasesResult extends Head {
 
 export type Result = SingleResult | CasesResult;
 
-export interface ResultInput {
-  readonly tool: { readonly name: string; readonly version: string };
+/** One case, computed. */
+export interface CaseInput {
+  /** null when the run sheet has no cases. */
+  readonly name: string | null;
   readonly chip: Chip;
   readonly run: Run;
   readonly network: Network;
   readonly flow: FlowState;
   readonly findings: FindingReport;
-  /** File name of the layout as printed. */
-  readonly layoutFile: string;
   /** How far unresolved joints could move flows and pressures. */
   readonly jointShares?: JointShares;
   /** The flows that counting centrelines alone would give, for the report's list of joints; found when asked for. */
   readonly centrelineFlow?: () => FlowState;
-  readonly pump?: PumpPart;
-  readonly spread?: SpreadPart;
+  /** Settings found for targets, at which the chip was computed. */
+  readonly found?: FoundSettings;
+  /** How far tolerances move it. */
+  readonly spread?: Spread;
+}
+
+export interface ReportInput {
+  readonly tool: { readonly name: string; readonly version: string };
+  /** File name as printed, and the hash of the file. */
+  readonly layout: { readonly file: string; readonly sha256: string };
+  /** null without a run sheet. */
+  readonly sheet: (Pick<RunSheet, 'file' | 'cases'> & { readonly sha256: string }) | null;
+  /** In the order given; one without a name stands alone. */
+  readonly cases: readonly CaseInput[];
 }
 
 /**
- * The result of one case in SI units, keys as in the JSON document. Nodes, reaches and segments are rows made on demand.
- * What does not exist (a sealed branch's residence time, a pressure without reference) is null.
+ * The result of a layout under its cases in SI units, keys as in the JSON document. Nodes, reaches and segments are rows made on
+ * demand. What does not exist (a sealed branch's residence time, a pressure without reference) is null.
  */
-export function buildResult(input: ResultInput): SingleResult {
-  return { ...headOf(input), ...casePartOf(input) };
-}
-
-/** Several cases of one layout in one document, in the order given. */
-export function buildCasesResult(
-  cases: readonly { readonly name: string; readonly input: ResultInput }[],
-): CasesResult {
-  if (cases.length === 0) throw new RangeError('a result of cases needs at least one case');
-  const parts = cases.map(({ name, input }) => ({ case: name, ...casePartOf(input) }));
+export function buildResult(input: ReportInput): Result {
+  const [first] = input.cases;
+  if (first === undefined) throw new RangeError('a result needs at least one case');
+  const head = headOf(input, first.chip);
+  if (first.name === null) return { ...head, ...casePartOf(first) };
+  const parts = input.cases.map((one) => ({ case: one.name ?? '', ...casePartOf(one) }));
   return {
-    ...headOf(cases[0].input),
+    ...head,
     verdict: parts.some((part) => part.verdict === 'hold') ? 'hold' : 'ready',
     cases: parts,
   };
 }
 
-function headOf({ tool, chip, run: { sheet }, layoutFile }: ResultInput): Head {
+function headOf({ tool, layout, sheet }: ReportInput, chip: Chip): Head {
   return {
     tool: { name: tool.name, version: tool.version, result_version: RESULT_VERSION },
     layout: {
-      file: layoutFile,
-      sha256: chip.layoutSha256,
+      file: layout.file,
+      sha256: layout.sha256,
       width_mm: chip.widthMm,
       height_mm: chip.heightMm,
       unit_mm: chip.unitMm,
@@ -111,7 +124,7 @@ function headOf({ tool, chip, run: { sheet }, layoutFile }: ResultInput): Head {
   };
 }
 
-function casePartOf(input: ResultInput): CasePart {
+function casePartOf(input: CaseInput): CasePart {
   const { chip, run, network, flow, findings } = input;
   const sectionOf = sectionCache();
   return {
@@ -146,8 +159,8 @@ function casePartOf(input: ResultInput): CasePart {
       worst_imbalance: known(flow.worstImbalance) ?? 0,
       worst_node: flow.worstNode < 0 ? null : nodeName(network, flow.worstNode),
     },
-    ...(input.pump === undefined ? {} : { pump: input.pump }),
-    ...(input.spread === undefined ? {} : { spread: input.spread }),
+    ...(input.found === undefined ? {} : { pump: pumpPartOf(network, input.found) }),
+    ...(input.spread === undefined ? {} : { spread: spreadPartOf(input.spread) }),
   };
 }
 
