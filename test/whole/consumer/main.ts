@@ -99,7 +99,7 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
   const duct: Known<rillcheck.SectionState> = rillcheck.computeSection(section);
   const form: Known<rillcheck.DuctForm> = rillcheck.ductForm(5e-4, 5e-5);
 
-  void [edge, limits, fluid, mixture, faults, conditions, layers, kinds, round, parts, own, severities];
+  void [edge, limits, fluid, mixture, faults, ports, conditions, layers, kinds, round, parts, own, severities];
   void [shares, targets, pumped, items, form, duct];
   const texts = [draft, json, reaches, segments, rillcheck.svgPicture(one, picture)];
   return [
