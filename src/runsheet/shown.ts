@@ -122,7 +122,7 @@ const LADDERS: Record<Shown, { readonly usual: string; readonly units: readonly 
 export function showOf(show: ShowUnits | null): Show {
   const fixed = new Map<Shown, Unit>();
   for (const [quantity, text] of Object.entries(show ?? {})) {
-    if (text === undefined) continue;
+    if (text === null) continue;
     // the keys of ShowUnits are all members of Shown
     const shown = quantity as keyof ShowUnits;
     fixed.set(shown, {
