@@ -3,7 +3,7 @@ import { withoutEscapes } from '../escaped-names.ts';
 import { pathText } from './path-text.ts';
 import { quote } from './quote.ts';
 import { DRAWN_KEYS } from './schema.ts';
-import type { MapEntry, MapNode, TreeNode } from './tree.ts';
+import { type MapEntry, type MapNode, mapNodes } from './tree.ts';
 
 /**
  * The tree with an editor's escapes read in every key that is a name of the drawing, so that a run sheet may write `lane_x5F_1` or
@@ -12,10 +12,10 @@ import type { MapEntry, MapNode, TreeNode } from './tree.ts';
  */
 export function withDecodedNames(root: MapNode, file: string): MapNode {
   const { entries } = decodeSheet(root, file, []);
-  return mapValues({ ...root, entries }, (node, key) =>
+  return mapNodes({ ...root, entries }, (node, key) =>
     key !== 'cases' || node.kind !== 'map'
       ? node
-      : mapValues(node, (change, name) =>
+      : mapNodes(node, (change, name) =>
           change.kind === 'map' ? decodeSheet(change, file, ['cases', name]) : change,
         ),
   );
@@ -23,7 +23,7 @@ export function withDecodedNames(root: MapNode, file: string): MapNode {
 
 function decodeSheet(sheet: MapNode, file: string, prefix: readonly string[]): MapNode {
   const decode = (map: MapNode, place: readonly string[]): MapNode =>
-    mapValues(map, (node, key) => {
+    mapNodes(map, (node, key) => {
       const here = [...place, key];
       if (node.kind !== 'map') return node;
       return DRAWN_KEYS.has(here.join('.'))
@@ -31,15 +31,6 @@ function decodeSheet(sheet: MapNode, file: string, prefix: readonly string[]): M
         : decode(node, here);
     });
   return decode(sheet, []);
-}
-
-function mapValues(map: MapNode, change: (node: TreeNode, key: string) => TreeNode): MapNode {
-  const entries = new Map<string, MapEntry>();
-  for (const [key, entry] of map.entries) {
-    const node = change(entry.node, key);
-    entries.set(key, node === entry.node ? entry : { ...entry, node });
-  }
-  return { ...map, entries };
 }
 
 function decodeKeys(node: MapNode, file: string, path: readonly string[]): MapNode {

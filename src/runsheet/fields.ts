@@ -6,15 +6,15 @@ import * as v from 'valibot';
 import { withoutEscapes } from '../escaped-names.ts';
 import { recordOf } from './names.ts';
 import { nearest } from './nearest.ts';
-import { quote } from './quote.ts';
+import { hint, quote } from './quote.ts';
 import { describeQuantity, parseQuantity, type Quantity, QuantityError } from './units.ts';
 
 /** A schema that reads anything and hands on `T`. */
 export type Field<T> = v.GenericSchema<unknown, T>;
 
-export type Bound = 'above 0' | 'not below 0' | 'any';
+type Bound = 'above 0' | 'not below 0' | 'any';
 
-export interface QuantityOptions {
+interface QuantityOptions {
   readonly bound: Bound;
   /** What it is called in messages, with its article: "a depth". */
   readonly noun?: string | undefined;
@@ -30,7 +30,7 @@ export function quantity(
 ): Field<number> {
   const usual = describeQuantity(kind);
   const shown = example ?? usual.example;
-  const exampleUnit = shown.replace(/^[^ ]* ?/, '');
+  const exampleUnit = unitOf(shown);
   return scalar(
     shown,
     { description, examples: [shown], ...(usual.isBare ? { type: ['string', 'number'] } : {}) },
@@ -265,10 +265,6 @@ export function toleranceByName(kind: Quantity, example: string): Key<ToleranceB
   return withDefault(either, { all: null, byName: recordOf([]) });
 }
 
-export function hint(example: string): string {
-  return `write for example ${example.startsWith('{') || example.startsWith('[') ? example : `"${example}"`}`;
-}
-
 const SHAPES = {
   text: 'one text',
   list: 'a list',
@@ -278,6 +274,11 @@ const SHAPES = {
 function shapeOf(input: unknown): keyof typeof SHAPES {
   if (typeof input === 'string') return 'text';
   return Array.isArray(input) ? 'list' : 'map';
+}
+
+/** "um" of "50 um", nothing of "10". */
+function unitOf(example: string): string {
+  return example.replace(/^[^ ]* ?/, '');
 }
 
 function checkBound(text: string, value: number, bound: Bound, noun: string, example: string): void {
@@ -298,11 +299,7 @@ function toleranceValue(
         `${quote(written)} is a percentage; ${describeQuantity(kind).word} is needed; ${hint(example)}`,
       );
     }
-    const value = parseQuantity(
-      written,
-      relative ? 'share' : kind,
-      relative ? '%' : example.replace(/^[^ ]* ?/, ''),
-    );
+    const value = parseQuantity(written, relative ? 'share' : kind, relative ? '%' : unitOf(example));
     checkBound(written, value, 'not below 0', 'a tolerance', example);
     if (relative && value >= 1)
       throw new QuantityError(`${quote(written)} is not below 100 %; ${hint(example)}`);

@@ -10,7 +10,7 @@ export function runSheetJsonSchema(): object {
   const ofCase = partly(convert(caseSchema));
   const properties = { ...object(sheet.properties) };
   properties.cases = {
-    description: 'Each is the sheet with these changes, solved and judged on its own.',
+    description: object(properties.cases).description,
     type: 'object',
     additionalProperties: withoutHead(ofCase),
   };

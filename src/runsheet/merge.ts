@@ -1,6 +1,6 @@
 import { isPattern, longestMatch, recordOf } from './names.ts';
 import { EXCLUSIVE_KEYS, type SheetValues } from './schema.ts';
-import type { MapEntry, MapNode, TreeNode } from './tree.ts';
+import { isEmpty, type MapEntry, type MapNode, type TreeNode } from './tree.ts';
 
 /**
  * A case as a whole sheet: the base with the changes laid over it. Maps merge key by key, texts and lists replace.
@@ -23,7 +23,7 @@ function mergeMaps(base: MapNode, changes: MapNode, path: readonly string[]): Ma
   }
   for (const [key, change] of changes.entries) {
     const before = entries.get(key) ?? coveringPort(base, key, path);
-    if (path.length === 0 && change.node.kind === 'text' && change.node.empty) continue;
+    if (path.length === 0 && isEmpty(change.node)) continue;
     const node = before === undefined ? change.node : mergeNodes(before.node, change.node, [...path, key]);
     entries.set(key, { node, line: change.line });
   }

@@ -8,7 +8,7 @@ import { nearest } from './nearest.ts';
 import { type KeyPath, pathText } from './path-text.ts';
 import { quote } from './quote.ts';
 import { caseSchema, SHEET_KEYS, type SheetValues, sheetSchema } from './schema.ts';
-import { lineAt, type MapEntry, type MapNode, parseTree, type TreeNode, toPlain } from './tree.ts';
+import { isEmpty, lineAt, type MapEntry, type MapNode, mapNodes, parseTree, toPlain } from './tree.ts';
 import type { Placed, RunSheet } from './types.ts';
 
 /**
@@ -35,28 +35,16 @@ interface Source {
 const MOST_CASES = 100;
 const MOST_PATTERNS = 1000;
 
-/** A section with nothing after its colon (all of it commented out) counts as not written. */
+/** A section with nothing after its colon (all of it commented out) counts as not written; a case, as the sheet as it stands. */
 function withoutEmpty(root: MapNode): MapNode {
-  const entries = new Map<string, MapEntry>();
-  for (const [key, entry] of root.entries) {
-    if (entry.node.kind === 'text' && entry.node.empty && SHEET_KEYS.has(key)) continue;
-    entries.set(key, key === 'cases' ? { ...entry, node: withEmptyCases(entry.node) } : entry);
-  }
-  return { ...root, entries };
-}
-
-/** `culture:` with nothing after it is the sheet as it stands. */
-function withEmptyCases(node: TreeNode): TreeNode {
-  if (node.kind !== 'map') return node;
-  const entries = new Map<string, MapEntry>();
-  for (const [name, entry] of node.entries) {
-    const empty = entry.node.kind === 'text' && entry.node.empty;
-    entries.set(
-      name,
-      empty ? { ...entry, node: { kind: 'map', entries: new Map(), line: entry.line } } : entry,
-    );
-  }
-  return { ...node, entries };
+  const isWritten = ([key, { node }]: [string, MapEntry]): boolean => !isEmpty(node) || !SHEET_KEYS.has(key);
+  return mapNodes({ ...root, entries: new Map([...root.entries].filter(isWritten)) }, (node, key) =>
+    key === 'cases' && node.kind === 'map'
+      ? mapNodes(node, (change) =>
+          isEmpty(change) ? { kind: 'map', entries: new Map(), line: change.line } : change,
+        )
+      : node,
+  );
 }
 
 function parseCases(root: MapNode, values: SheetValues, source: Source): RunSheet['cases'] {
@@ -200,18 +188,14 @@ function refusePatterns(values: SheetValues, refuse: Refuse): void {
     if (names.filter(isPattern).length <= MOST_PATTERNS) return;
     refuse(path, `more than the limit "patterns" of ${MOST_PATTERNS} names with *`);
   };
-  const { targets, accept } = values;
+  const { targets } = values;
+  const ofTargets = targets.map(({ name }) => name);
+  const ofAccepted = values.accept.map(({ at }) => at);
   limit(['ports'], Object.keys(values.ports));
   limit(['channels'], Object.keys(values.channels));
   limit(['ignore'], values.ignore);
-  limit(
-    ['targets'],
-    targets.map(({ name }) => name),
-  );
-  limit(
-    ['accept'],
-    accept.map(({ at }) => at),
-  );
+  limit(['targets'], ofTargets);
+  limit(['accept'], ofAccepted);
   for (const [i, { by }] of targets.entries()) {
     if (isPattern(by))
       refuse(['targets', i, 'by'], `${quote(by)} is a pattern; a target is met by one port, named in full`);

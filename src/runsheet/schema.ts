@@ -12,7 +12,6 @@ import {
   described,
   drawnName,
   type Field,
-  hint,
   type Key,
   keys,
   list,
@@ -28,9 +27,8 @@ import {
   word,
 } from './fields.ts';
 import { RULE_MEASURES, UNACCEPTABLE_RULES } from './measures.ts';
-import { recordOf } from './names.ts';
 import { nearest } from './nearest.ts';
-import { quote } from './quote.ts';
+import { hint, quote } from './quote.ts';
 import { describeQuantity, parseQuantity, type Quantity, QuantityError, unitFactor } from './units.ts';
 
 const PORT_EXAMPLE = '{ pressure: 12 kPa }';
@@ -125,7 +123,7 @@ const fluid = byShape(
             description: 'Dynamic viscosity; temperature is then ignored.',
           }),
           density: quantity('density', { bound: 'above 0', description: 'Density.' }),
-          glycerol: glycerol,
+          glycerol,
         },
         FLUID_EXAMPLE,
       ),
@@ -664,6 +662,9 @@ function ceiling(
 const section = <T>(field: Field<T>, description: string): Key<T, null> =>
   withDefault(described(field, description), v.parse(field, {}));
 
+const listSection = <T>(items: Field<readonly T[]>, description: string): Key<readonly T[], null> =>
+  withDefault(described(items, description), []);
+
 /** Every key but `cases`. */
 const entries = {
   title: text('Title of the report.', 'Four-lane culture chip'),
@@ -696,12 +697,9 @@ const entries = {
     'chip-edge',
   ),
   ports_layer: called('portsLayer', drawnName('Only circles of this layer are ports.', 'holes')),
-  ignore: withDefault(
-    described(
-      list(drawnName('A name; * matches any run of characters.', 'dim-*'), '["dim-*", marks]'),
-      'Names of elements or layers that are not read.',
-    ),
-    [],
+  ignore: listSection(
+    list(drawnName('A name; * matches any run of characters.', 'dim-*'), '["dim-*", marks]'),
+    'Names of elements or layers that are not read.',
   ),
   join_within: called(
     'joinWithinMm',
@@ -715,42 +713,30 @@ const entries = {
     ['cast elastomer', 'etched glass', 'etched silicon', 'milled thermoplastic', 'moulded thermoplastic'],
     'How the chip is made; gives usual limits.',
   ),
-  fluid: fluid,
+  fluid,
   temperature: called('temperatureK', temperature('Temperature of the chip; 25 degC when not given.')),
   depth: called('depthM', depth('Etch depth of every layer not named under layers.')),
-  layers: withDefault(
-    described(named(layer, '{ lanes: { depth: 120 um } }'), 'Depth, profile and plane of each layer.'),
-    recordOf([]),
+  layers: section(named(layer, '{ lanes: { depth: 120 um } }'), 'Depth, profile and plane of each layer.'),
+  ports: section(named(port, '{ feed: { pressure: 12 kPa } }'), 'How each port is run.'),
+  channels: section(
+    named(channel, '{ "lane-*": { wall_shear: { max: 0.5 Pa } } }'),
+    'Windows by name: exact name first, then the longest pattern.',
   ),
-  ports: withDefault(
-    described(named(port, '{ feed: { pressure: 12 kPa } }'), 'How each port is run.'),
-    recordOf([]),
-  ),
-  channels: withDefault(
-    described(
-      named(channel, '{ "lane-*": { wall_shear: { max: 0.5 Pa } } }'),
-      'Windows by name: exact name first, then the longest pattern.',
-    ),
-    recordOf([]),
-  ),
-  solutes: withDefault(
-    described(
-      named(
-        keys(
-          {
-            diffusion: called(
-              'diffusionM2s',
-              required(quantity('diffusion', { bound: 'above 0', description: 'Diffusion coefficient.' })),
-            ),
-            unit: text('Unit of its concentrations: printed, not converted.', 'uM'),
-          },
-          SOLUTE_EXAMPLE,
-        ),
-        `{ drug: ${SOLUTE_EXAMPLE} }`,
+  solutes: section(
+    named(
+      keys(
+        {
+          diffusion: called(
+            'diffusionM2s',
+            required(quantity('diffusion', { bound: 'above 0', description: 'Diffusion coefficient.' })),
+          ),
+          unit: text('Unit of its concentrations: printed, not converted.', 'uM'),
+        },
+        SOLUTE_EXAMPLE,
       ),
-      'What the fluids carry.',
+      `{ drug: ${SOLUTE_EXAMPLE} }`,
     ),
-    recordOf([]),
+    'What the fluids carry.',
   ),
   junctions: word(
     ['laminar', 'mixed'],
@@ -771,40 +757,25 @@ const entries = {
     ),
     'Change of fluid at the supplies, and how soon it must have arrived.',
   ),
-  fields: withDefault(
-    described(
-      list(drawnName('A stroke or a filled shape.', 'chamber'), '[chamber]'),
-      'Chambers whose floor is computed in 2-D.',
-    ),
-    [],
+  fields: listSection(
+    list(drawnName('A stroke or a filled shape.', 'chamber'), '[chamber]'),
+    'Chambers whose floor is computed in 2-D.',
   ),
-  pillars: withDefault(
-    described(
-      list(drawnName('A layer.', 'posts'), '[posts]'),
-      'Layers whose filled shapes stand in the chambers; none of them is a port, channel or outline.',
-    ),
-    [],
+  pillars: listSection(
+    list(drawnName('A layer.', 'posts'), '[posts]'),
+    'Layers whose filled shapes stand in the chambers; none of them is a port, channel or outline.',
   ),
-  targets: withDefault(
-    described(list(target, `[${TARGET_EXAMPLE}]`), 'What the command pump must reach.'),
-    [],
-  ),
+  targets: listSection(list(target, `[${TARGET_EXAMPLE}]`), 'What the command pump must reach.'),
   pump_limits: called(
     'pumpLimits',
-    withDefault(
-      described(named(pumpLimit, '{ feed: { max_pressure: 200 kPa } }'), 'What each pump can do.'),
-      recordOf([]),
-    ),
+    section(named(pumpLimit, '{ feed: { max_pressure: 200 kPa } }'), 'What each pump can do.'),
   ),
   limits: section(limits, 'Limits of the process and of the chip.'),
   tolerances: described(tolerances, 'How far fabrication and running vary, for the command spread.'),
   show: section(show, 'Units on screen and paper.'),
-  accept: withDefault(
-    described(
-      list(accept, '[{ rule: thin-wall, at: lane-1, … }]'),
-      'Findings that someone has looked at and takes on.',
-    ),
-    [],
+  accept: listSection(
+    list(accept, '[{ rule: thin-wall, at: lane-1, … }]'),
+    'Findings that someone has looked at and takes on.',
   ),
 };
 

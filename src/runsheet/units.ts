@@ -7,7 +7,7 @@
  */
 import { createUnitClass, type Unit as MathUnit, type UnitCtor } from 'mathjs';
 import { nearest } from './nearest.ts';
-import { quote } from './quote.ts';
+import { hint, quote } from './quote.ts';
 
 /** Text that is not the quantity asked for. The message says what is wrong and gives a right example; the caller adds where. */
 export class QuantityError extends Error {
@@ -58,7 +58,7 @@ export function parseQuantity(text: string, quantity: Quantity, exampleUnit?: st
 
 function refuseBeyond(text: string, si: number, quantity: Quantity, usual: string): void {
   const size = Math.abs(si);
-  const [least, most] = KINDS[quantity].sizes;
+  const { least, most } = KINDS[quantity];
   if (size > most) throw new QuantityError(`${quote(text)} is too large for a chip; ${usual}`);
   if (size !== 0 && size < least) throw new QuantityError(`${quote(text)} is too small for a chip; ${usual}`);
 }
@@ -106,7 +106,8 @@ interface Kind {
    * Smallest and largest size in SI units (0 is always read): far beyond anything on a chip, and narrow enough that a
    * resistance, with the cube of a depth in it, still fits a double.
    */
-  readonly sizes: readonly [number, number];
+  readonly least: number;
+  readonly most: number;
   readonly spellings: readonly string[];
   /** Why it has no unit, for a quantity that is a bare number; null for the others. */
   readonly plain: string | null;
@@ -186,61 +187,35 @@ const PRESSURES = [
 ];
 const TEMPERATURES = ['degC', '°C', 'K', 'degF'];
 const VOLUMES = ['nL', 'uL', 'µL', 'mL', 'L', 'pL'];
+const FLOWS = [
+  ...VOLUMES.flatMap((volume) => ['s', 'min', 'h', 'hr'].map((time) => `${volume}/${time}`)),
+  'm^3/s',
+];
+const LENGTHS = ['um', 'µm', 'mm', 'cm', 'm', 'nm', 'in', 'thou', 'mil'];
+const VELOCITIES = ['m/s', 'cm/s', 'mm/s', 'um/s', 'µm/s', 'mm/min'];
+const VISCOSITIES = ['mPa s', 'mPa·s', 'mPa*s', 'mPa.s', 'Pa s', 'cP'];
+const DENSITIES = ['kg/m^3', 'kg/m3', 'kg/m³', 'g/mL', 'g/cm^3'];
+const DIFFUSIONS = ['m^2/s', 'm2/s', 'm²/s', 'cm^2/s', 'mm^2/s', 'um^2/s', 'µm^2/s', 'µm²/s'];
 
 const KINDS = {
-  length: kind(
-    'a length',
-    '50 um',
-    'm',
-    [1e-12, 1e4],
-    ['um', 'µm', 'mm', 'cm', 'm', 'nm', 'in', 'thou', 'mil'],
-  ),
-  pressure: kind('a pressure', '12 kPa', 'Pa', [1e-12, 1e12], PRESSURES),
-  wall_shear: kind('a wall shear', '0.3 Pa', 'Pa', [1e-12, 1e12], PRESSURES),
-  flow: kind(
-    'a flow',
-    '2 uL/min',
-    'm³/s',
-    [1e-30, 1e6],
-    [...VOLUMES.flatMap((volume) => ['s', 'min', 'h', 'hr'].map((time) => `${volume}/${time}`)), 'm^3/s'],
-  ),
-  time: kind('a time', '10 s', 's', [1e-12, 1e15], ['s', 'ms', 'min', 'h', 'hr']),
-  velocity: kind(
-    'a velocity',
-    '1 mm/s',
-    'm/s',
-    [1e-18, 1e6],
-    ['m/s', 'cm/s', 'mm/s', 'um/s', 'µm/s', 'mm/min'],
-  ),
-  viscosity: kind(
-    'a viscosity',
-    '0.94 mPa s',
-    'Pa s',
-    [1e-9, 1e9],
-    ['mPa s', 'mPa·s', 'mPa*s', 'mPa.s', 'Pa s', 'cP'],
-  ),
-  density: kind(
-    'a density',
-    '1003 kg/m^3',
-    'kg/m³',
-    [1e-9, 1e9],
-    ['kg/m^3', 'kg/m3', 'kg/m³', 'g/mL', 'g/cm^3'],
-  ),
-  temperature: kind('a temperature', '37 degC', 'K', [0, 1e6], TEMPERATURES),
-  temperature_difference: kind('a temperature difference', '1 degC', 'K', [0, 1e6], TEMPERATURES),
-  angle: kind('an angle', '30 deg', 'rad', [0, 1e3], ['deg', '°', 'rad']),
-  share: kind('a percentage', '80 %', '', [1e-12, 1e9], ['%']),
-  ratio: bare('a plain ratio', [1e-12, 1e12], 'this is a plain ratio'),
-  diffusion: kind(
-    'a diffusion coefficient',
-    '5e-10 m^2/s',
-    'm²/s',
-    [1e-30, 1],
-    [...['m^2/s', 'm2/s', 'm²/s', 'cm^2/s', 'mm^2/s', 'um^2/s', 'µm^2/s', 'µm²/s']],
-  ),
+  length: kind('a length', '50 um', 'm', 1e-12, 1e4, LENGTHS),
+  pressure: kind('a pressure', '12 kPa', 'Pa', 1e-12, 1e12, PRESSURES),
+  wall_shear: kind('a wall shear', '0.3 Pa', 'Pa', 1e-12, 1e12, PRESSURES),
+  flow: kind('a flow', '2 uL/min', 'm³/s', 1e-30, 1e6, FLOWS),
+  time: kind('a time', '10 s', 's', 1e-12, 1e15, ['s', 'ms', 'min', 'h', 'hr']),
+  velocity: kind('a velocity', '1 mm/s', 'm/s', 1e-18, 1e6, VELOCITIES),
+  viscosity: kind('a viscosity', '0.94 mPa s', 'Pa s', 1e-9, 1e9, VISCOSITIES),
+  density: kind('a density', '1003 kg/m^3', 'kg/m³', 1e-9, 1e9, DENSITIES),
+  temperature: kind('a temperature', '37 degC', 'K', 0, 1e6, TEMPERATURES),
+  temperature_difference: kind('a temperature difference', '1 degC', 'K', 0, 1e6, TEMPERATURES),
+  angle: kind('an angle', '30 deg', 'rad', 0, 1e3, ['deg', '°', 'rad']),
+  share: kind('a percentage', '80 %', '', 1e-12, 1e9, ['%']),
+  ratio: bare('a plain ratio', 1e-12, 1e12, 'this is a plain ratio'),
+  diffusion: kind('a diffusion coefficient', '5e-10 m^2/s', 'm²/s', 1e-30, 1, DIFFUSIONS),
   concentration: bare(
     'a concentration',
-    [1e-30, 1e30],
+    1e-30,
+    1e30,
     'a concentration is a bare number, its unit stands under solutes',
   ),
 };
@@ -251,7 +226,8 @@ function kind(
   word: string,
   example: string,
   siUnit: string,
-  sizes: readonly [number, number],
+  least: number,
+  most: number,
   known: readonly string[],
 ): Kind {
   const [exampleNumber, ...rest] = example.split(' ');
@@ -262,14 +238,15 @@ function kind(
     exampleUnit: rest.join(' '),
     siUnit,
     dimension,
-    sizes,
+    least,
+    most,
     spellings: known,
     plain: null,
   };
 }
 
-function bare(word: string, sizes: readonly [number, number], plain: string): Kind {
-  return { ...kind(word, '10', '', sizes, []), plain };
+function bare(word: string, least: number, most: number, plain: string): Kind {
+  return { ...kind(word, '10', '', least, most, []), plain };
 }
 
 /** What a wrong dimension is called. */
@@ -349,10 +326,6 @@ function splitNumber(
     throw new QuantityError(`${quote(text)} is too small to hold; ${usual}`);
   }
   return { value: value + 0, numberText, unitText };
-}
-
-function hint(example: string): string {
-  return `write for example "${example}"`;
 }
 
 const scales = new Map<string, Scale | null>();
