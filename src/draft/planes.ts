@@ -6,7 +6,7 @@ import { layerCrossings } from '../network/layer-crossings.ts';
 /** Layer of a stroke that lies in none. */
 export const NO_LAYER = -1;
 
-export interface ProposedPlanes {
+interface ProposedPlanes {
   /** Plane of each layer that is to lie in another than the chip's own. */
   readonly of: ReadonlyMap<number, string>;
   /** Layers that are so taken to pass over each other. */

@@ -243,7 +243,7 @@ export function tolerance(
 }
 
 /** A tolerance for all, or one for each name with `default` for the rest. */
-export interface ToleranceByName {
+interface ToleranceByName {
   readonly all: Tolerance | null;
   readonly byName: Readonly<Record<string, Tolerance>>;
 }

@@ -1,7 +1,7 @@
 import type { Quantity } from './units.ts';
 
 /** What `accept` may say about a rule: in which quantities its measure is, none for a rule that measures nothing. */
-export interface RuleMeasure {
+interface RuleMeasure {
   readonly quantities: readonly Quantity[];
   /** An entry must then say `up_to`. */
   readonly ceilingNeeded: boolean;

@@ -25,7 +25,7 @@ import { UNUSABLE_KEYS } from './names.ts';
 import { type KeyPath, pathText } from './path-text.ts';
 import { quote } from './quote.ts';
 
-export interface TextNode {
+interface TextNode {
   readonly kind: 'text';
   readonly text: string;
   readonly line: number;
@@ -42,7 +42,7 @@ export interface MapNode {
   readonly entries: ReadonlyMap<string, MapEntry>;
   readonly line: number;
 }
-export interface ListNode {
+interface ListNode {
   readonly kind: 'list';
   readonly items: readonly TreeNode[];
   readonly line: number;

@@ -47,7 +47,7 @@ export type AcceptEntry = Values['accept'][number] & Placed;
 type Target = Values['targets'][number] & Placed & { readonly index: number };
 export type TargetEntry = Exclude<Target, { readonly quantity: 'concentration' }>;
 /** Kept apart from the other targets: what fluids carry is not computed yet. */
-export type ConcentrationTarget = Extract<Target, { readonly quantity: 'concentration' }>;
+type ConcentrationTarget = Extract<Target, { readonly quantity: 'concentration' }>;
 
 export interface RunSheet
   extends Omit<
