@@ -9,7 +9,7 @@ import type { Clip, Group, Shape, SvgDrawing, Undrawn } from '../svg/types.ts';
 import { quoted, ValueError } from '../svg/value-error.ts';
 import { type Flattened, flatten, MAX_COORDINATE, MAX_PIECES, type PieceBudget } from './flatten.ts';
 import { type Circle, ROUNDNESS, roundRing } from './roundness.ts';
-import type { Drawn, Hole, Ignored, Layout, LayoutItem, Outline, Stroke } from './types.ts';
+import type { Centreline, Drawn, Hole, Ignored, Layout, LayoutItem, Outline, Stroke } from './types.ts';
 
 /**
  * @param where the file's name, for messages.
@@ -104,14 +104,15 @@ function roundItem(shape: Shape, drawn: Drawn, laying: Laying): LayoutItem | nul
   const { filled, dashed } = shape.style;
   const stroked = shape.style.stroked && !dashed;
   if (shape.dataChannel && (filled || stroked)) {
-    return stroked
-      ? toStroke(shape, drawn, flattenShape(shape, laying), laying)
-      : toOutline(shape, drawn, laying, false);
+    const flat = flattenShape(shape, laying);
+    return stroked ? toStroke(shape, drawn, flat, laying) : toOutline(shape, drawn, flat, false);
   }
-  if (!filled && !stroked) return dashed ? toIgnored(shape, drawn, laying, 'dashed stroke') : null;
-  const circle = drawnCircle(shape);
+  if (!filled && !stroked && !dashed) return null;
+  const circle = filled || stroked ? drawnCircle(shape) : null;
   if (circle !== null) return toHole(drawn, circle, filled, stroked);
-  return filled ? toOutline(shape, drawn, laying, stroked) : toIgnored(shape, drawn, laying, 'ellipse');
+  const flat = flattenShape(shape, laying);
+  if (filled) return toOutline(shape, drawn, flat, stroked);
+  return toIgnored(drawn, flat, stroked ? 'ellipse' : 'dashed stroke');
 }
 
 function pathItem(shape: Shape, drawn: Drawn, laying: Laying): LayoutItem | null {
@@ -128,12 +129,17 @@ function pathItem(shape: Shape, drawn: Drawn, laying: Laying): LayoutItem | null
   // What is said to be a channel is one by its stroke, whatever fills it.
   if (filled && isClosed && !(shape.dataChannel && stroked)) {
     const [first, ...others] = flat.subpaths;
-    const mayBeRound = others.length === 0 && (first.closed || first.endsMeet) && !shape.dataChannel;
+    const mayBeRound = others.length === 0 && endsMeet(first) && !shape.dataChannel;
     const circle = mayBeRound ? roundRing(first.points) : null;
-    return circle !== null ? toHole(drawn, circle, true, stroked) : outlineOf(shape, drawn, flat, stroked);
+    return circle !== null ? toHole(drawn, circle, true, stroked) : toOutline(shape, drawn, flat, stroked);
   }
   if (stroked) return toStroke(shape, drawn, flat, laying);
-  return ignoredOf(drawn, flat, style.dashed ? 'dashed stroke' : 'fill');
+  return toIgnored(drawn, flat, style.dashed ? 'dashed stroke' : 'fill');
+}
+
+/** First and last point are the same, whether closed (z) or drawn so. */
+function endsMeet({ points }: Centreline): boolean {
+  return points[0] === points.at(-2) && points[1] === points.at(-1);
 }
 
 /** Coordinates of the fewest points that enclose anything. */
@@ -167,12 +173,7 @@ function toStroke(shape: Shape, drawn: Drawn, flat: Flattened, laying: Laying): 
     ...drawn,
     width: strokeWidth(shape, laying),
     linecap: shape.style.linecap,
-    centrelines: flat.subpaths.map(({ points, closed, bendRadius, curves }) => ({
-      points,
-      closed,
-      bendRadius,
-      curves,
-    })),
+    centrelines: flat.subpaths,
     dataDepth: shape.dataDepth ?? enclosingOf(shape, laying).dataDepth,
     dataChannel: shape.dataChannel,
     disguises: disguisesOf(shape, flat),
@@ -235,19 +236,11 @@ function toHole(drawn: Drawn, circle: Circle, filled: boolean, stroked: boolean)
   return { kind: 'hole', ...drawn, ...circle, filled, stroked };
 }
 
-function toOutline(shape: Shape, drawn: Drawn, laying: Laying, stroked: boolean): Outline {
-  return outlineOf(shape, drawn, flattenShape(shape, laying), stroked);
-}
-
-function toIgnored(shape: Shape, drawn: Drawn, laying: Laying, reason: string): Ignored {
-  return ignoredOf(drawn, flattenShape(shape, laying), reason);
-}
-
-function outlineOf({ dataChannel }: Shape, drawn: Drawn, flat: Flattened, stroked: boolean): Outline {
+function toOutline({ dataChannel }: Shape, drawn: Drawn, flat: Flattened, stroked: boolean): Outline {
   return { kind: 'outline', ...drawn, ...ringsOf(flat), stroked, dataChannel };
 }
 
-function ignoredOf(drawn: Drawn, flat: Flattened, reason: string): Ignored {
+function toIgnored(drawn: Drawn, flat: Flattened, reason: string): Ignored {
   return { kind: 'ignored', ...drawn, reason, ...ringsOf(flat) };
 }
 

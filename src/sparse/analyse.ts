@@ -7,6 +7,7 @@
  * A block of c columns with r rows below them is a panel of (c + r) rows × c columns, stored row by row; of its top c × c square only what lies below the
  * diagonal is used.
  */
+import { byGroup } from '../groups.ts';
 import { orderForLittleFill } from './order.ts';
 import { type Adjacency, adjacencyOf, type GraphPattern } from './pattern.ts';
 
@@ -28,8 +29,6 @@ export interface Analysis {
   readonly edgeEntry: Int32Array;
   /** Entries of L below the diagonal before blocks were joined. */
   readonly fill: number;
-  /** Multiplications of one factorisation, before blocks were joined. */
-  readonly multiplications: number;
   /** Widest block and longest panel, for workspaces. */
   readonly widestBlock: number;
   readonly longestPanel: number;
@@ -64,12 +63,6 @@ export function analyse(pattern: GraphPattern): Analysis {
     widestBlock = Math.max(widestBlock, columns);
     longestPanel = Math.max(longestPanel, length);
   }
-  let fill = 0;
-  let multiplications = 0;
-  for (const c of tree.count) {
-    fill += c;
-    multiplications += (c * (c + 3)) / 2;
-  }
   const layout = { firstColumn, rowStart, row, blockOfColumn, panelStart };
   return {
     nodeCount,
@@ -78,8 +71,7 @@ export function analyse(pattern: GraphPattern): Analysis {
     blockCount,
     ...layout,
     edgeEntry: entriesOf(pattern, place, layout),
-    fill,
-    multiplications,
+    fill: tree.count.reduce((sum, count) => sum + count, 0),
     widestBlock,
     longestPanel,
   };
@@ -151,12 +143,10 @@ function postorder({ parent, count }: Tree): Int32Array {
 
 function byFallingCount(count: Int32Array): Int32Array {
   const n = count.length;
-  const bucketStart = new Int32Array(n + 2);
-  for (let j = 0; j < n; j++) bucketStart[n - count[j] + 1]++;
-  for (let k = 0; k <= n; k++) bucketStart[k + 1] += bucketStart[k];
-  const sorted = new Int32Array(n);
-  for (let j = 0; j < n; j++) sorted[bucketStart[n - count[j]]++] = j;
-  return sorted;
+  return byGroup(
+    n + 1,
+    count.map((c) => n - c),
+  ).member;
 }
 
 function renumbered({ parent, count }: Tree, tour: Int32Array): Tree {

@@ -8,6 +8,7 @@
  * Words of the paper: a *variable* is a node not yet eliminated, an *element* is an eliminated node that stands for the clique of the variables it was
  * joined to (its *boundary*). The list of a variable holds elements first, then variables; the list of an element is its boundary.
  */
+import { byGroup } from '../groups.ts';
 import type { Adjacency } from './pattern.ts';
 
 /** Order of elimination: result[k] is the node to eliminate k-th. */
@@ -223,21 +224,8 @@ function freshStamp(q: QuotientGraph, step: number): number {
 
 /** Prunes the list of every boundary variable, bounds its degree, absorbs what the new element covers and sorts variables into hash buckets. */
 function updateBoundary(q: QuotientGraph, pivot: number): void {
-  const {
-    list,
-    listStart,
-    listLength,
-    elementCount,
-    weight,
-    mark,
-    degree,
-    state,
-    into,
-    hashOf,
-    hashHead,
-    hashNext,
-  } = q;
-  const stamp = q.stamp;
+  const { list, listStart, listLength, elementCount, weight, mark, degree, state, stamp } = q;
+  const { into, hashOf, hashHead, hashNext } = q;
   const start = listStart[pivot];
   const stop = start + listLength[pivot];
   for (let p = start; p < stop; p++) {
@@ -299,8 +287,8 @@ function updateBoundary(q: QuotientGraph, pivot: number): void {
 function mergeTwins(q: QuotientGraph, pivot: number): void {
   if (q.boundaryWeight > q.largestBoundary) q.largestBoundary = q.boundaryWeight;
   q.stamp = freshStamp(q, q.largestBoundary + 1);
-  const { list, listStart, listLength, elementCount, weight, mark, state, into, hashOf, hashHead, hashNext } =
-    q;
+  const { list, listStart, listLength, elementCount, weight, mark, state } = q;
+  const { into, hashOf, hashHead, hashNext } = q;
   const start = listStart[pivot];
   const stop = start + listLength[pivot];
   for (let p = start; p < stop; p++) {
@@ -366,8 +354,6 @@ function finishElement(q: QuotientGraph, pivot: number): void {
 function sequenceOf(q: QuotientGraph): Int32Array {
   const { nodeCount, into, pivotRank, pivotCount, listLength } = q;
   const rank = new Int32Array(nodeCount);
-  const start = new Int32Array(pivotCount + 2);
-  const dense: number[] = [];
   for (let i = 0; i < nodeCount; i++) {
     let root = i;
     while (into[root] >= 0) root = into[root];
@@ -376,18 +362,9 @@ function sequenceOf(q: QuotientGraph): Int32Array {
       into[j] = root;
       j = next;
     }
-    if (pivotRank[root] < 0) dense.push(i);
     rank[i] = pivotRank[root] < 0 ? pivotCount : pivotRank[root];
-    start[rank[i] + 1]++;
   }
-  for (let k = 0; k <= pivotCount; k++) start[k + 1] += start[k];
-  const order = new Int32Array(nodeCount);
-  const denseStart = start[pivotCount];
-  const cursor = start.slice(0, pivotCount);
-  for (let i = 0; i < nodeCount; i++) if (rank[i] < pivotCount) order[cursor[rank[i]]++] = i;
-  dense.sort((a, b) => listLength[a] - listLength[b] || a - b);
-  dense.forEach((i, k) => {
-    order[denseStart + k] = i;
-  });
+  const { first, member: order } = byGroup(pivotCount + 1, rank);
+  order.subarray(first[pivotCount]).sort((a, b) => listLength[a] - listLength[b] || a - b);
   return order;
 }
