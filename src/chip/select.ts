@@ -1,3 +1,4 @@
+import { remembered } from '../groups.ts';
 import type { Hole, Ignored, Layout, LayoutItem, Outline, Stroke } from '../layout/types.ts';
 import { isPattern, layerKey, matches } from '../runsheet/names.ts';
 import type { RunSheet } from '../runsheet/types.ts';
@@ -96,13 +97,8 @@ function ignoreTest(ignore: readonly string[]): (item: LayoutItem) => boolean {
   const element = nameTest(ignore);
   const group = nameTest(ignore.map(layerKey));
   const byGroups = new Map<readonly string[], boolean>();
-  const groupsIgnored = (groups: readonly string[]): boolean => {
-    const known = byGroups.get(groups);
-    if (known !== undefined) return known;
-    const answer = groups.some((name) => group(layerKey(name)));
-    byGroups.set(groups, answer);
-    return answer;
-  };
+  const groupsIgnored = (groups: readonly string[]): boolean =>
+    remembered(byGroups, groups, () => groups.some((name) => group(layerKey(name))));
   return (item) => (item.name !== null && element(item.name)) || groupsIgnored(item.groups);
 }
 

@@ -3,6 +3,7 @@
  * units. Whether a hole is a port and a name a layer is for the run sheet to say.
  */
 import { InputError } from '../errors.ts';
+import { remembered } from '../groups.ts';
 import { PX_MM } from '../svg/lengths.ts';
 import { stretches } from '../svg/matrix.ts';
 import type { Clip, Group, Shape, SvgDrawing, Undrawn } from '../svg/types.ts';
@@ -15,32 +16,22 @@ import type { Centreline, Drawn, Hole, Ignored, Layout, LayoutItem, Outline, Str
  * @param where the file's name, for messages.
  * @throws InputError naming the shape for a point beyond ±1e12, and for more than 2 million segments.
  */
-export function layOut(drawing: SvgDrawing, where: string): Layout {
+export function layOut({ shapes, unread, ...scale }: SvgDrawing, where: string): Layout {
   const laying: Laying = {
     budget: { piecesLeft: MAX_PIECES },
     enclosing: new Map(),
-    pxUnits: PX_MM / drawing.unitMm,
+    pxUnits: PX_MM / scale.unitMm,
     zeroLength: 0,
   };
   const items: LayoutItem[] = [];
-  const undrawn: Undrawn[] = [...drawing.undrawn];
-  for (const shape of drawing.shapes) {
+  const undrawn: Undrawn[] = [...scale.undrawn];
+  for (const shape of shapes) {
     const item = toItemOrExplain(shape, laying, where);
     if (item !== null) items.push(item);
     else if (shape.name !== null) undrawn.push({ kind: 'shape', name: shape.name, why: whyNothing(shape) });
   }
-  const { unitMm, unitStated, unitReason, widthMm, heightMm, unread } = drawing;
   const zeroLength = laying.zeroLength === 0 ? {} : { 'subpath without length': laying.zeroLength };
-  return {
-    unitMm,
-    unitStated,
-    unitReason,
-    widthMm,
-    heightMm,
-    items,
-    undrawn,
-    unread: { ...unread, ...zeroLength },
-  };
+  return { ...scale, items, undrawn, unread: { ...unread, ...zeroLength } };
 }
 
 function whyNothing({ style, tag }: Shape): string {
@@ -155,16 +146,11 @@ function toDrawn(shape: Shape, laying: Laying): Drawn {
   return { ordinal: shape.ordinal, name: shape.name, id: shape.id, groups: enclosingOf(shape, laying).names };
 }
 
-function enclosingOf(shape: Shape, laying: Laying): Enclosing {
-  let enclosing = laying.enclosing.get(shape.groups);
-  if (enclosing === undefined) {
-    enclosing = {
-      names: shape.groups.flatMap((group) => group.name ?? []),
-      dataDepth: shape.groups.findLast((group) => group.dataDepth !== null)?.dataDepth ?? null,
-    };
-    laying.enclosing.set(shape.groups, enclosing);
-  }
-  return enclosing;
+function enclosingOf({ groups }: Shape, { enclosing }: Laying): Enclosing {
+  return remembered(enclosing, groups, () => ({
+    names: groups.flatMap(({ name }) => name ?? []),
+    dataDepth: groups.findLast(({ dataDepth }) => dataDepth !== null)?.dataDepth ?? null,
+  }));
 }
 
 function toStroke(shape: Shape, drawn: Drawn, flat: Flattened, laying: Laying): Stroke {

@@ -5,9 +5,9 @@ import { indexBoxes } from '../../src/geometry/box-index.ts';
 it('bounds hold all places with what reaches from them, and nothing at first', () => {
   const bounds = new Bounds();
   expect(bounds.left > bounds.right && bounds.top > bounds.bottom).toBe(true);
-  bounds.add(3, -1);
+  bounds.add(3, -1, 0.25);
   bounds.addLine([0, 2, 1, 5], 0.5);
-  expect(bounds).toMatchObject({ left: -0.5, top: -1, right: 3, bottom: 5.5 });
+  expect(bounds).toMatchObject({ left: -0.5, top: -1.25, right: 3.25, bottom: 5.5 });
 });
 
 it('an index finds the boxes that touch a rectangle, and one of no boxes finds nothing', () => {
