@@ -50,10 +50,9 @@ export function findNearPairs(
   const box = pieceBoxes(pieces, (i) => pieces.half[i] * capFactor(i) + pieces.bulge[i]);
   const index = indexBoxes(box);
 
-  let pairA = new Int32Array(Math.max(64, 2 * n));
-  let pairB = new Int32Array(pairA.length);
-  let pairDistance = new Float64Array(pairA.length);
-  let pairCount = 0;
+  const pairA: number[] = [];
+  const pairB: number[] = [];
+  const pairDistance: number[] = [];
   for (let i = 0; i < n; i++) {
     const b = 4 * i;
     const near = index.search(
@@ -77,35 +76,26 @@ export function findNearPairs(
       const strips = pieces.half[i] * capFactor(i) + pieces.half[j] * capFactor(j);
       if (distance > strips + withinMm + pieces.bulge[i] + pieces.bulge[j]) continue;
       if (isOwnBend(pieces, i, j, distance)) continue;
-      if (pairCount === pairA.length) {
-        if (pairCount >= MAX_NEAR_PAIRS) {
-          throw new InputError(
-            where,
-            `more than ${MAX_NEAR_PAIRS} pairs of segments lie close together (near-pair limit): the drawing repeats or piles up its strokes; remove the copies`,
-          );
-        }
-        const size = Math.min(MAX_NEAR_PAIRS, 2 * pairCount);
-        pairA = grown(pairA, new Int32Array(size));
-        pairB = grown(pairB, new Int32Array(size));
-        pairDistance = grown(pairDistance, new Float64Array(size));
+      if (pairA.length === MAX_NEAR_PAIRS) {
+        throw new InputError(
+          where,
+          `more than ${MAX_NEAR_PAIRS} pairs of segments lie close together (near-pair limit): the drawing repeats or piles up its strokes; remove the copies`,
+        );
       }
-      pairA[pairCount] = i;
-      pairB[pairCount] = j;
-      pairDistance[pairCount] = distance;
-      pairCount++;
+      pairA.push(i);
+      pairB.push(j);
+      pairDistance.push(distance);
     }
   }
-  pairA = pairA.subarray(0, pairCount);
-  pairB = pairB.subarray(0, pairCount);
-  const { first: firstPair, member: side } = sidesByNode(n, pairA, pairB);
+  const columns = { pairA: new Int32Array(pairA), pairB: new Int32Array(pairB) };
+  const { first: firstPair, member: side } = sidesByNode(n, columns.pairA, columns.pairB);
   return {
     pieces,
     index: n === 0 ? null : index,
     withinMm,
-    pairCount,
-    pairA,
-    pairB,
-    pairDistance: pairDistance.subarray(0, pairCount),
+    pairCount: pairA.length,
+    ...columns,
+    pairDistance: new Float64Array(pairDistance),
     firstPair,
     pairOf: side.map((s) => s >> 1),
   };
@@ -144,9 +134,4 @@ function isOwnBend(pieces: Pieces, i: number, j: number, distance: number): bool
   if (pieces.centrelineClosed[c] === 0) return false;
   const between = pieces.start[j] - pieces.start[i] - pieces.length[i];
   return pieces.centrelineLength[c] - between <= twoWidths;
-}
-
-function grown<T extends Int32Array | Float64Array>(from: T, to: T): T {
-  to.set(from);
-  return to;
 }

@@ -29,9 +29,8 @@ export interface Analysis {
   readonly edgeEntry: Int32Array;
   /** Entries of L below the diagonal before blocks were joined. */
   readonly fill: number;
-  /** Widest block and longest panel, for workspaces. */
+  /** For workspaces. */
   readonly widestBlock: number;
-  readonly longestPanel: number;
 }
 
 /** Orders the nodes, builds the elimination tree and lays out the factor. */
@@ -52,7 +51,6 @@ export function analyse(pattern: GraphPattern): Analysis {
 
   const panelStart = new Int32Array(blockCount + 1);
   let widestBlock = 0;
-  let longestPanel = 0;
   for (let b = 0; b < blockCount; b++) {
     const columns = firstColumn[b + 1] - firstColumn[b];
     const length = columns + rowStart[b + 1] - rowStart[b];
@@ -61,7 +59,6 @@ export function analyse(pattern: GraphPattern): Analysis {
       throw new RangeError(`factor of ${nodeCount} nodes would hold more than 2^31 entries`);
     panelStart[b + 1] = end;
     widestBlock = Math.max(widestBlock, columns);
-    longestPanel = Math.max(longestPanel, length);
   }
   const layout = { firstColumn, rowStart, row, blockOfColumn, panelStart };
   return {
@@ -73,7 +70,6 @@ export function analyse(pattern: GraphPattern): Analysis {
     edgeEntry: entriesOf(pattern, place, layout),
     fill: tree.count.reduce((sum, count) => sum + count, 0),
     widestBlock,
-    longestPanel,
   };
 }
 

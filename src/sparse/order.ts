@@ -29,73 +29,52 @@ export function orderForLittleFill(adjacency: Adjacency): Int32Array {
 const ELEMENT = 1;
 const DEAD = 2;
 
-interface QuotientGraph {
-  readonly nodeCount: number;
-  readonly state: Uint8Array;
-  /** Lists of all nodes, one after another with gaps. */
-  list: Int32Array;
-  listEnd: number;
-  readonly listStart: Int32Array;
-  readonly listLength: Int32Array;
-  /** How many entries at the front of a variable's list are elements. */
-  readonly elementCount: Int32Array;
-  /** How many nodes a variable or pivot stands for; negative while it is on the boundary at work, 0 once it is dead. */
-  readonly weight: Int32Array;
-  /** Variable: bound on its external degree. Element: weight of its boundary. */
-  readonly degree: Int32Array;
-  /** Node into which a dead variable went. */
-  readonly into: Int32Array;
-  /** Place of each pivot in the order, −1 for others. */
-  readonly pivotRank: Int32Array;
-  pivotCount: number;
-  /** Nodes eliminated so far, by weight. */
-  eliminated: number;
-  /** Double-linked lists of variables by degree. */
-  readonly degreeHead: Int32Array;
-  readonly degreeNext: Int32Array;
-  readonly degreePrevious: Int32Array;
-  leastDegree: number;
-  /** Element e: mark[e] − stamp = weight of its boundary outside the one at work, where mark[e] ≥ stamp. */
-  readonly mark: Int32Array;
-  stamp: number;
-  largestBoundary: number;
-  readonly hashHead: Int32Array;
-  readonly hashNext: Int32Array;
-  readonly hashOf: Int32Array;
-  /** Weight of the boundary at work. */
-  boundaryWeight: number;
-}
+type QuotientGraph = ReturnType<typeof emptyGraph>;
 
-function quotientGraphOf({ start, neighbour }: Adjacency): QuotientGraph {
-  const nodeCount = start.length - 1;
-  const list = new Int32Array(neighbour.length + (neighbour.length >> 2) + 2 * nodeCount + 1);
-  list.set(neighbour);
-  const q: QuotientGraph = {
+function emptyGraph(nodeCount: number, list: Int32Array, listEnd: number, listStart: Int32Array) {
+  return {
     nodeCount,
     state: new Uint8Array(nodeCount),
+    /** Lists of all nodes, one after another with gaps. */
     list,
-    listEnd: neighbour.length,
-    listStart: start.slice(0, nodeCount),
+    listEnd,
+    listStart,
     listLength: new Int32Array(nodeCount),
+    /** How many entries at the front of a variable's list are elements. */
     elementCount: new Int32Array(nodeCount),
+    /** How many nodes a variable or pivot stands for; negative while it is on the boundary at work, 0 once it is dead. */
     weight: new Int32Array(nodeCount).fill(1),
+    /** Variable: bound on its external degree. Element: weight of its boundary. */
     degree: new Int32Array(nodeCount),
+    /** Node into which a dead variable went. */
     into: new Int32Array(nodeCount).fill(-1),
+    /** Place of each pivot in the order, −1 for others. */
     pivotRank: new Int32Array(nodeCount).fill(-1),
     pivotCount: 0,
+    /** Nodes eliminated so far, by weight. */
     eliminated: 0,
+    /** Double-linked lists of variables by degree. */
     degreeHead: new Int32Array(nodeCount + 1).fill(-1),
     degreeNext: new Int32Array(nodeCount).fill(-1),
     degreePrevious: new Int32Array(nodeCount).fill(-1),
     leastDegree: 0,
+    /** Element e: mark[e] − stamp = weight of its boundary outside the one at work, where mark[e] ≥ stamp. */
     mark: new Int32Array(nodeCount),
     stamp: 1,
     largestBoundary: 0,
     hashHead: new Int32Array(nodeCount).fill(-1),
     hashNext: new Int32Array(nodeCount).fill(-1),
     hashOf: new Int32Array(nodeCount),
+    /** Weight of the boundary at work. */
     boundaryWeight: 0,
   };
+}
+
+function quotientGraphOf({ start, neighbour }: Adjacency): QuotientGraph {
+  const nodeCount = start.length - 1;
+  const list = new Int32Array(neighbour.length + (neighbour.length >> 2) + 2 * nodeCount + 1);
+  list.set(neighbour);
+  const q = emptyGraph(nodeCount, list, neighbour.length, start.slice(0, nodeCount));
   // A node joined to a good part of the graph would make every degree bound near it worthless: it is set aside and comes last.
   const denseDegree = Math.max(16, 10 * Math.sqrt(nodeCount));
   for (let i = nodeCount - 1; i >= 0; i--) {
