@@ -18,7 +18,7 @@ import { walkDrawing } from './walk.ts';
  * SVG, a file that is cut off, a value that cannot be read, or a limit.
  */
 export function readSvg(text: string, where: string): SvgDrawing {
-  if (text.length > MAX_SVG_BYTES || Buffer.byteLength(text) > MAX_SVG_BYTES) {
+  if (text.length > MAX_SVG_BYTES || new TextEncoder().encode(text).length > MAX_SVG_BYTES) {
     throw new InputError(
       where,
       `the SVG is over ${MAX_SVG_BYTES / 1e6} MB (the limit); split or simplify the drawing`,
