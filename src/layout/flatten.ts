@@ -8,25 +8,14 @@
  *   until the estimated loss, (p − c)/2 or (p − c)/3, is within the tolerance.
  * Cost: linear in the pieces. A cusp, where no piece is straight enough, ends at a millionth of the curve.
  */
+import { Bounds } from '../geometry/bounds.ts';
 import { type Curve, type Ellipse, ellipseX, ellipseY } from '../geometry/curve.ts';
 import type { Matrix, PathCommand } from '../svg/types.ts';
 import { ValueError } from '../svg/value-error.ts';
-
-export interface Subpath {
-  /** x0 y0 x1 y1 … ; consecutive points differ; a closed one repeats its first point at the end. */
-  readonly points: Float64Array;
-  /** One per piece: radius of curvature there, 0 for a straight piece. */
-  readonly bendRadius: Float64Array;
-  /** The curve each piece was cut from, null for a straight one; null when all are straight. */
-  readonly curves: readonly (Curve | null)[] | null;
-  /** Drawn closed (z), and encloses something. */
-  readonly closed: boolean;
-  /** First and last point are the same, whether closed or drawn so. */
-  readonly endsMeet: boolean;
-}
+import type { Centreline } from './types.ts';
 
 export interface Flattened {
-  readonly subpaths: readonly Subpath[];
+  readonly subpaths: readonly Centreline[];
   /** Subpaths that were drawn and have no length. */
   readonly zeroLength: number;
 }
@@ -71,7 +60,7 @@ const ENDS_MEET = 1e-9;
 export const MAX_COORDINATE = 1e12;
 
 class Polyline {
-  readonly subpaths: Subpath[] = [];
+  readonly subpaths: Centreline[] = [];
   zeroLength = 0;
   readonly #matrix: Matrix;
   readonly #budget: PieceBudget;
@@ -390,7 +379,7 @@ function tidy(
   radii: readonly number[],
   curves: readonly (Curve | null)[],
   how: 'open' | 'closed',
-): Subpath | null {
+): Centreline | null {
   const { extent, largest } = measure(points);
   // Rounding of coordinates as large as these, and of as small a path.
   const same = 1e-12 * extent + 4 * Number.EPSILON * largest;
@@ -438,22 +427,16 @@ function tidy(
   }
   return {
     points: Float64Array.from(kept),
+    closed: how === 'closed' && !isThereAndBack,
     bendRadius: Float64Array.from(keptRadii),
     curves: keptCurves.some((curve) => curve !== null) ? keptCurves : null,
-    closed: how === 'closed' && !isThereAndBack,
-    endsMeet: endsMeet && !(isThereAndBack && how === 'closed'),
   };
 }
 
 function measure(points: readonly number[]): { readonly extent: number; readonly largest: number } {
-  let [minX, minY] = points;
-  let [maxX, maxY] = points;
-  for (let i = 2; i < points.length; i += 2) {
-    minX = Math.min(minX, points[i]);
-    maxX = Math.max(maxX, points[i]);
-    minY = Math.min(minY, points[i + 1]);
-    maxY = Math.max(maxY, points[i + 1]);
-  }
-  const largest = Math.max(Math.abs(minX), Math.abs(maxX), Math.abs(minY), Math.abs(maxY));
-  return { extent: length(maxX - minX, maxY - minY), largest };
+  const bounds = new Bounds();
+  bounds.addLine(points);
+  const { left, top, right, bottom } = bounds;
+  const largest = Math.max(Math.abs(left), Math.abs(right), Math.abs(top), Math.abs(bottom));
+  return { extent: length(right - left, bottom - top), largest };
 }

@@ -116,22 +116,15 @@ function readAbsolute(kind: string, reader: NumberReader, pen: Pen, dx: number, 
       return { kind: 'line', x: pen.x, y: dy + reader.next() };
     case 'c':
     case 's': {
-      const smooth = kind === 's';
-      const follows = pen.last === 'c' || pen.last === 's';
-      const x1 = smooth ? (follows ? 2 * pen.x - pen.controlX : pen.x) : dx + reader.next();
-      const y1 = smooth ? (follows ? 2 * pen.y - pen.controlY : pen.y) : dy + reader.next();
-      const x2 = dx + reader.next();
-      const y2 = dy + reader.next();
+      const [x1, y1] = kind === 's' ? reflected(pen, 'cs') : [dx + reader.next(), dy + reader.next()];
+      const [x2, y2] = [dx + reader.next(), dy + reader.next()];
       pen.controlX = x2;
       pen.controlY = y2;
       return { kind: 'cubic', x1, y1, x2, y2, x: dx + reader.next(), y: dy + reader.next() };
     }
     case 'q':
     case 't': {
-      const smooth = kind === 't';
-      const follows = pen.last === 'q' || pen.last === 't';
-      const x1 = smooth ? (follows ? 2 * pen.x - pen.controlX : pen.x) : dx + reader.next();
-      const y1 = smooth ? (follows ? 2 * pen.y - pen.controlY : pen.y) : dy + reader.next();
+      const [x1, y1] = kind === 't' ? reflected(pen, 'qt') : [dx + reader.next(), dy + reader.next()];
       pen.controlX = x1;
       pen.controlY = y1;
       return { kind: 'quadratic', x1, y1, x: dx + reader.next(), y: dy + reader.next() };
@@ -150,6 +143,11 @@ function readAbsolute(kind: string, reader: NumberReader, pen: Pen, dx: number, 
     default:
       return { kind: 'close' };
   }
+}
+
+/** First control point of a smooth curve: the last one mirrored in the pen, or the pen after anything but its own kinds. */
+function reflected({ x, y, controlX, controlY, last }: Pen, kinds: string): readonly [number, number] {
+  return last !== '' && kinds.includes(last) ? [2 * x - controlX, 2 * y - controlY] : [x, y];
 }
 
 /** Numbers with SVG's separators: blanks, one comma, or nothing where the next sign or point says enough. */
