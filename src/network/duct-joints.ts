@@ -1,19 +1,18 @@
 import type { Chip } from '../chip/types.ts';
 import { bendK, MITRE_MAX_TURN_RAD, mitreK, shallowMitreK } from '../physics/joints.ts';
+import type { Chains } from './chains.ts';
+import { APART_WIDTHS } from './computed-joints.ts';
 import type { Draft } from './draft.ts';
 import type { JointTally } from './joint-types.ts';
-import { ANGLE_TOLERANCE_RAD, APART_WIDTHS, turnBetween } from './node-joints.ts';
 import type { Reaches } from './reaches.ts';
-import type { Runs } from './runs.ts';
+import { ANGLE_TOLERANCE_RAD, turnBetween } from './turns.ts';
+import type { Network } from './types.ts';
 
 /** The last computed radius of a bend, in widths. */
 const TIGHTEST_BEND_WIDTHS = 1;
 
-/** Signed length and bound that corners and bends add to each reach, mm. */
-export interface DuctJoints {
-  readonly reachMm: Float64Array;
-  readonly reachBoundMm: Float64Array;
-}
+/** Signed length that joints add to each reach, and its bound, mm. */
+export type ReachJoints = Pick<Network, 'reachJointMm' | 'reachJointBoundMm'>;
 
 /**
  * Rule 8, `joints: resolved`, inside runs of equal duct: mitred corners by their turn, bends by radius and angle (chords of
@@ -22,8 +21,11 @@ export interface DuctJoints {
  *
  * Cost: linear in the segments.
  */
-export function addDuctJoints(draft: Draft, reaches: Reaches, runs: Runs, tally: JointTally): DuctJoints {
-  const joints = { reachMm: new Float64Array(reaches.count), reachBoundMm: new Float64Array(reaches.count) };
+export function addDuctJoints(draft: Draft, reaches: Reaches, runs: Chains, tally: JointTally): ReachJoints {
+  const joints = {
+    reachJointMm: new Float64Array(reaches.reachCount),
+    reachJointBoundMm: new Float64Array(reaches.reachCount),
+  };
   const run = new Run(reaches);
   for (let n = 0; n < runs.count; n++) {
     run.set(draft.chip, runs, n);
@@ -49,18 +51,19 @@ class Run {
     this.reaches = reaches;
   }
 
-  set(chip: Chip, runs: Runs, n: number): void {
-    const { firstSegment, channel } = this.reaches;
-    const { ductWidthMm, depthMm } = chip.channels[channel[runs.reach[runs.first[n]]]];
+  set(chip: Chip, runs: Chains, n: number): void {
+    const { firstSegment, reachChannel } = this.reaches;
+    const { ductWidthMm, depthMm } = chip.channels[reachChannel[runs.side[runs.first[n]] >> 1]];
     this.width = ductWidthMm;
     this.aspect = ductWidthMm / depthMm;
     this.isLoop = runs.isLoop[n] === 1;
     this.count = 0;
     for (let k = runs.first[n]; k < runs.first[n + 1]; k++) {
-      const begin = firstSegment[runs.reach[k]];
-      const end = firstSegment[runs.reach[k] + 1];
+      const reach = runs.side[k] >> 1;
+      const begin = firstSegment[reach];
+      const end = firstSegment[reach + 1];
       if (this.count + end - begin > this.codes.length) this.grow(this.count + end - begin);
-      if (runs.reversed[k] === 0) for (let s = begin; s < end; s++) this.codes[this.count++] = 2 * s;
+      if ((runs.side[k] & 1) === 0) for (let s = begin; s < end; s++) this.codes[this.count++] = 2 * s;
       else for (let s = end - 1; s >= begin; s--) this.codes[this.count++] = 2 * s + 1;
     }
   }
@@ -72,28 +75,28 @@ class Run {
   }
 
   reachOf(k: number): number {
-    return this.reaches.segments.reach[this.codes[k] >> 1];
+    return this.reaches.segmentReach[this.codes[k] >> 1];
   }
 
   dx(k: number): number {
-    const { x1, x2 } = this.reaches.segments;
+    const { segmentX1: x1, segmentX2: x2 } = this.reaches;
     const s = this.codes[k] >> 1;
     return (this.codes[k] & 1) === 0 ? x2[s] - x1[s] : x1[s] - x2[s];
   }
 
   dy(k: number): number {
-    const { y1, y2 } = this.reaches.segments;
+    const { segmentY1: y1, segmentY2: y2 } = this.reaches;
     const s = this.codes[k] >> 1;
     return (this.codes[k] & 1) === 0 ? y2[s] - y1[s] : y1[s] - y2[s];
   }
 
   startX(k: number): number {
-    const { x1, x2 } = this.reaches.segments;
+    const { segmentX1: x1, segmentX2: x2 } = this.reaches;
     return ((this.codes[k] & 1) === 0 ? x1 : x2)[this.codes[k] >> 1];
   }
 
   startY(k: number): number {
-    const { y1, y2 } = this.reaches.segments;
+    const { segmentY1: y1, segmentY2: y2 } = this.reaches;
     return ((this.codes[k] & 1) === 0 ? y1 : y2)[this.codes[k] >> 1];
   }
 
@@ -103,7 +106,7 @@ class Run {
   }
 
   radius(k: number): number {
-    return this.reaches.segments.bendRadius[this.codes[k] >> 1];
+    return this.reaches.segmentBendRadiusMm[this.codes[k] >> 1];
   }
 
   /** Turn from segment k to the next, rad. */
@@ -119,7 +122,7 @@ class Run {
   }
 }
 
-function addCorners(run: Run, joints: DuctJoints, tally: JointTally, slackMm: number): void {
+function addCorners(run: Run, joints: ReachJoints, tally: JointTally, slackMm: number): void {
   const { width, count, isLoop } = run;
   // A bend is a joint too, where it turns by more than the tolerance over the room that a corner needs. It has no meeting
   // point; it begins where a mitre's square would: half a width before.
@@ -145,7 +148,7 @@ function addCorners(run: Run, joints: DuctJoints, tally: JointTally, slackMm: nu
     if (turn <= 1e-6) continue;
     // Needs no room and is not listed: its k is below 0.001.
     if (turn <= ANGLE_TOLERANCE_RAD) {
-      addAt(run, joints.reachMm, k, mitreK(run.aspect, turn).k * width);
+      addAt(run, joints.reachJointMm, k, mitreK(run.aspect, turn).k * width);
       continue;
     }
     // A vertex within the slack of the run's end is the node there, drawn a hair off.
@@ -171,7 +174,7 @@ function addAt(run: Run, into: Float64Array, k: number, value: number): void {
 
 function addCorner(
   run: Run,
-  joints: DuctJoints,
+  joints: ReachJoints,
   tally: JointTally,
   at: number,
   turn: number,
@@ -182,8 +185,8 @@ function addCorner(
   const isComputed = turn <= MITRE_MAX_TURN_RAD + 1e-9;
   const { k, error } = mitreK(aspect, Math.min(turn, MITRE_MAX_TURN_RAD));
   if (isComputed && room >= APART_WIDTHS * width - 1e-6) {
-    addAt(run, joints.reachMm, at, k * width);
-    addAt(run, joints.reachBoundMm, at, error * width);
+    addAt(run, joints.reachJointMm, at, k * width);
+    addAt(run, joints.reachJointBoundMm, at, error * width);
     tally.add('mitred corner', k * width, error * width, x, y);
     return;
   }
@@ -191,11 +194,11 @@ function addCorner(
   // of the legs, most in the shallow limit, up to all that there is of the shorter one on either leg.
   const beyond = isComputed ? 0 : Math.min(Math.abs(shallowMitreK(turn)) * width, 2 * room);
   const bound = Math.max((Math.abs(k) + error) * width, beyond);
-  addAt(run, joints.reachBoundMm, at, bound);
+  addAt(run, joints.reachJointBoundMm, at, bound);
   tally.add('corner not computed', 0, bound, x, y);
 }
 
-function addBends(run: Run, joints: DuctJoints, tally: JointTally): void {
+function addBends(run: Run, joints: ReachJoints, tally: JointTally): void {
   for (let k = 0; k < run.count; ) {
     const next = run.radius(k) === 0 ? k + 1 : endOfBend(run, k);
     if (run.radius(k) > 0) addBend(run, joints, tally, k, next);
@@ -215,7 +218,7 @@ function endOfBend(run: Run, k: number): number {
   return next;
 }
 
-function addBend(run: Run, joints: DuctJoints, tally: JointTally, from: number, to: number): void {
+function addBend(run: Run, joints: ReachJoints, tally: JointTally, from: number, to: number): void {
   const { width, aspect } = run;
   let angle = 0;
   let tightest = Number.POSITIVE_INFINITY;
@@ -230,10 +233,10 @@ function addBend(run: Run, joints: DuctJoints, tally: JointTally, from: number, 
   let added = 0;
   for (let k = from; k < to; k++) {
     const share = chordAngle(run, k);
-    joints.reachBoundMm[run.reachOf(k)] += (bound * share) / angle;
+    joints.reachJointBoundMm[run.reachOf(k)] += (bound * share) / angle;
     if (!isComputed) continue;
     const length = bendK(aspect, Math.max(run.radius(k) / width, TIGHTEST_BEND_WIDTHS), share).k * width;
-    joints.reachMm[run.reachOf(k)] += length;
+    joints.reachJointMm[run.reachOf(k)] += length;
     added += length;
   }
   tally.add(isComputed ? 'bend' : 'bend not computed', added, bound, run.startX(from), run.startY(from));

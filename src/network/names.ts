@@ -37,7 +37,7 @@ export function nameSegment(
   chip: Chip,
   columns: ReachColumns,
   firstSegment: Int32Array,
-  segmentReach: readonly number[],
+  segmentReach: ArrayLike<number>,
   segment: number,
 ): string {
   const reach = segmentReach[segment];
