@@ -26,9 +26,9 @@ export function addDuctJoints(draft: Draft, reaches: Reaches, runs: Chains, tall
     reachJointMm: new Float64Array(reaches.reachCount),
     reachJointBoundMm: new Float64Array(reaches.reachCount),
   };
-  const run = new Run(reaches);
+  const run = new Run();
   for (let n = 0; n < runs.count; n++) {
-    run.set(draft.chip, runs, n);
+    run.set(draft.chip, reaches, runs, n);
     if (Number.isNaN(run.aspect)) continue;
     addCorners(run, joints, tally, draft.slackMm);
     addBends(run, joints, tally);
@@ -43,82 +43,49 @@ class Run {
   /** Width over depth; NaN where the depth is not known. */
   aspect = Number.NaN;
   isLoop = false;
-  private readonly reaches: Reaches;
-  /** 2·segment, + 1 where it is gone through backwards. */
-  private codes = new Int32Array(64);
+  readonly reach: number[] = [];
+  /** First point and vector, mm. */
+  readonly x: number[] = [];
+  readonly y: number[] = [];
+  readonly dx: number[] = [];
+  readonly dy: number[] = [];
+  readonly radius: number[] = [];
 
-  constructor(reaches: Reaches) {
-    this.reaches = reaches;
-  }
-
-  set(chip: Chip, runs: Chains, n: number): void {
-    const { firstSegment, reachChannel } = this.reaches;
-    const { ductWidthMm, depthMm } = chip.channels[reachChannel[runs.side[runs.first[n]] >> 1]];
+  set(chip: Chip, reaches: Reaches, { first, side, isLoop }: Chains, n: number): void {
+    const { firstSegment, reachChannel } = reaches;
+    const { ductWidthMm, depthMm } = chip.channels[reachChannel[side[first[n]] >> 1]];
     this.width = ductWidthMm;
     this.aspect = ductWidthMm / depthMm;
-    this.isLoop = runs.isLoop[n] === 1;
+    this.isLoop = isLoop[n] === 1;
     this.count = 0;
-    for (let k = runs.first[n]; k < runs.first[n + 1]; k++) {
-      const reach = runs.side[k] >> 1;
-      const begin = firstSegment[reach];
-      const end = firstSegment[reach + 1];
-      if (this.count + end - begin > this.codes.length) this.grow(this.count + end - begin);
-      if ((runs.side[k] & 1) === 0) for (let s = begin; s < end; s++) this.codes[this.count++] = 2 * s;
-      else for (let s = end - 1; s >= begin; s--) this.codes[this.count++] = 2 * s + 1;
+    for (let k = first[n]; k < first[n + 1]; k++) {
+      const begin = firstSegment[side[k] >> 1];
+      const end = firstSegment[(side[k] >> 1) + 1];
+      if ((side[k] & 1) === 0) for (let s = begin; s < end; s++) this.add(reaches, s, true);
+      else for (let s = end - 1; s >= begin; s--) this.add(reaches, s, false);
     }
   }
 
-  private grow(size: number): void {
-    const codes = new Int32Array(2 * size);
-    codes.set(this.codes);
-    this.codes = codes;
-  }
-
-  reachOf(k: number): number {
-    return this.reaches.segmentReach[this.codes[k] >> 1];
-  }
-
-  dx(k: number): number {
-    const { segmentX1: x1, segmentX2: x2 } = this.reaches;
-    const s = this.codes[k] >> 1;
-    return (this.codes[k] & 1) === 0 ? x2[s] - x1[s] : x1[s] - x2[s];
-  }
-
-  dy(k: number): number {
-    const { segmentY1: y1, segmentY2: y2 } = this.reaches;
-    const s = this.codes[k] >> 1;
-    return (this.codes[k] & 1) === 0 ? y2[s] - y1[s] : y1[s] - y2[s];
-  }
-
-  startX(k: number): number {
-    const { segmentX1: x1, segmentX2: x2 } = this.reaches;
-    return ((this.codes[k] & 1) === 0 ? x1 : x2)[this.codes[k] >> 1];
-  }
-
-  startY(k: number): number {
-    const { segmentY1: y1, segmentY2: y2 } = this.reaches;
-    return ((this.codes[k] & 1) === 0 ? y1 : y2)[this.codes[k] >> 1];
+  private add(reaches: Reaches, s: number, forward: boolean): void {
+    const { segmentX1: x1, segmentY1: y1, segmentX2: x2, segmentY2: y2 } = reaches;
+    const k = this.count++;
+    this.reach[k] = reaches.segmentReach[s];
+    this.x[k] = forward ? x1[s] : x2[s];
+    this.y[k] = forward ? y1[s] : y2[s];
+    this.dx[k] = forward ? x2[s] - x1[s] : x1[s] - x2[s];
+    this.dy[k] = forward ? y2[s] - y1[s] : y1[s] - y2[s];
+    this.radius[k] = reaches.segmentBendRadiusMm[s];
   }
 
   /** Drawn length, mm. */
   length(k: number): number {
-    return Math.hypot(this.dx(k), this.dy(k));
-  }
-
-  radius(k: number): number {
-    return this.reaches.segmentBendRadiusMm[this.codes[k] >> 1];
+    return Math.hypot(this.dx[k], this.dy[k]);
   }
 
   /** Turn from segment k to the next, rad. */
   turn(k: number): number {
-    return turnBetween(
-      this.dx(k),
-      this.dy(k),
-      this.radius(k),
-      this.dx(k + 1),
-      this.dy(k + 1),
-      this.radius(k + 1),
-    );
+    const { dx, dy, radius } = this;
+    return turnBetween(dx[k], dy[k], radius[k], dx[k + 1], dy[k + 1], radius[k + 1]);
   }
 }
 
@@ -138,7 +105,7 @@ function addCorners(run: Run, joints: ReachJoints, tally: JointTally, slackMm: n
   };
   if (isLoop) sinceJoint = Number.POSITIVE_INFINITY;
   for (let k = 0; k + 1 < count; k++) {
-    if (isTight(run.radius(k))) {
+    if (isTight(run.radius[k])) {
       settle(sinceJoint + width / 2);
       sinceJoint = width / 2;
     } else {
@@ -162,14 +129,14 @@ function addCorners(run: Run, joints: ReachJoints, tally: JointTally, slackMm: n
     return;
   }
   if (count === 0) return;
-  const rest = sinceJoint + (isTight(run.radius(count - 1)) ? width / 2 : run.length(count - 1));
+  const rest = sinceJoint + (isTight(run.radius[count - 1]) ? width / 2 : run.length(count - 1));
   if (rest > slackMm) settle(rest);
 }
 
 /** Adds to the reach of a corner between segment k and the next; at a seam half to either. */
 function addAt(run: Run, into: Float64Array, k: number, value: number): void {
-  into[run.reachOf(k)] += value / 2;
-  into[run.reachOf(k + 1)] += value / 2;
+  into[run.reach[k]] += value / 2;
+  into[run.reach[k + 1]] += value / 2;
 }
 
 function addCorner(
@@ -181,7 +148,7 @@ function addCorner(
   room: number,
 ): void {
   const { width, aspect } = run;
-  const [x, y] = [run.startX(at + 1), run.startY(at + 1)];
+  const [x, y] = [run.x[at + 1], run.y[at + 1]];
   const isComputed = turn <= MITRE_MAX_TURN_RAD + 1e-9;
   const { k, error } = mitreK(aspect, Math.min(turn, MITRE_MAX_TURN_RAD));
   if (isComputed && room >= APART_WIDTHS * width - 1e-6) {
@@ -200,8 +167,8 @@ function addCorner(
 
 function addBends(run: Run, joints: ReachJoints, tally: JointTally): void {
   for (let k = 0; k < run.count; ) {
-    const next = run.radius(k) === 0 ? k + 1 : endOfBend(run, k);
-    if (run.radius(k) > 0) addBend(run, joints, tally, k, next);
+    const next = run.radius[k] === 0 ? k + 1 : endOfBend(run, k);
+    if (run.radius[k] > 0) addBend(run, joints, tally, k, next);
     k = next;
   }
 }
@@ -210,7 +177,7 @@ function addBends(run: Run, joints: ReachJoints, tally: JointTally): void {
 function endOfBend(run: Run, k: number): number {
   let side = 0;
   let next = k + 1;
-  for (; next < run.count && run.radius(next) > 0; next++) {
+  for (; next < run.count && run.radius[next] > 0; next++) {
     const turn = turnSide(run, next - 1);
     if (side !== 0 && turn !== 0 && turn !== side) break;
     if (turn !== 0) side = turn;
@@ -224,7 +191,7 @@ function addBend(run: Run, joints: ReachJoints, tally: JointTally, from: number,
   let tightest = Number.POSITIVE_INFINITY;
   for (let k = from; k < to; k++) {
     angle += chordAngle(run, k);
-    tightest = Math.min(tightest, run.radius(k) / width);
+    tightest = Math.min(tightest, run.radius[k] / width);
   }
   const isComputed = tightest >= TIGHTEST_BEND_WIDTHS * (1 - 1e-6);
   // Tighter than its width: at worst it is a mitred corner of the same turn.
@@ -233,21 +200,21 @@ function addBend(run: Run, joints: ReachJoints, tally: JointTally, from: number,
   let added = 0;
   for (let k = from; k < to; k++) {
     const share = chordAngle(run, k);
-    joints.reachJointBoundMm[run.reachOf(k)] += (bound * share) / angle;
+    joints.reachJointBoundMm[run.reach[k]] += (bound * share) / angle;
     if (!isComputed) continue;
-    const length = bendK(aspect, Math.max(run.radius(k) / width, TIGHTEST_BEND_WIDTHS), share).k * width;
-    joints.reachJointMm[run.reachOf(k)] += length;
+    const length = bendK(aspect, Math.max(run.radius[k] / width, TIGHTEST_BEND_WIDTHS), share).k * width;
+    joints.reachJointMm[run.reach[k]] += length;
     added += length;
   }
-  tally.add(isComputed ? 'bend' : 'bend not computed', added, bound, run.startX(from), run.startY(from));
+  tally.add(isComputed ? 'bend' : 'bend not computed', added, bound, run.x[from], run.y[from]);
 }
 
 /** The angle of the curve that a chord was cut from. */
 function chordAngle(run: Run, k: number): number {
-  return 2 * Math.asin(Math.min(1, run.length(k) / (2 * run.radius(k))));
+  return 2 * Math.asin(Math.min(1, run.length(k) / (2 * run.radius[k])));
 }
 
 /** Which way the curve turns after this segment: +1 or −1, 0 for straight on. */
 function turnSide(run: Run, k: number): number {
-  return Math.sign(run.dx(k) * run.dy(k + 1) - run.dy(k) * run.dx(k + 1));
+  return Math.sign(run.dx[k] * run.dy[k + 1] - run.dy[k] * run.dx[k + 1]);
 }

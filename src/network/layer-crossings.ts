@@ -1,7 +1,7 @@
 import type { Port } from '../chip/types.ts';
 import type { Nearness } from '../geometry/near.ts';
 import { distanceToPiece, nearestShare } from '../geometry/on-piece.ts';
-import { type Pieces, pieceAt } from '../geometry/pieces.ts';
+import { neighbourPiece, type Pieces, pieceAt } from '../geometry/pieces.ts';
 import { bundleAt, findBundles } from './bundles.ts';
 import { type Point, toEnds } from './draft.ts';
 
@@ -115,17 +115,12 @@ function walker(near: Nearness, slackMm: number, layerOf: (channel: number) => n
 
   /** Whether the way on from a place comes out of the strip, over seams with other strokes of the layer. */
   function leaves(c: number, s: number, direction: 1 | -1, across: number, passed: Set<number>): boolean {
-    const first = pieces.firstPiece[c];
-    const last = pieces.firstPiece[c + 1] - 1;
-    const begin = pieceAt(pieces, c, s);
-    for (let k = 0; k <= last - first; k++) {
-      const at = begin + direction * k;
-      const isBeyond = at < first || at > last;
-      if (isBeyond && pieces.centrelineClosed[c] === 0) break;
-      const i = at < first ? at + last - first + 1 : at > last ? at - (last - first + 1) : at;
+    let i = pieceAt(pieces, c, s);
+    for (let count = pieces.firstPiece[c + 1] - pieces.firstPiece[c]; count > 0 && i >= 0; count--) {
       const x = direction === 1 ? pieces.x2[i] : pieces.x1[i];
       const y = direction === 1 ? pieces.y2[i] : pieces.y1[i];
       if (distanceToPiece(pieces, across, x, y) > pieces.half[across] + slackMm) return true;
+      i = neighbourPiece(pieces, i, direction);
     }
     if (pieces.centrelineClosed[c] === 1) return false;
     const end = direction === 1 ? 2 * c + 1 : 2 * c;

@@ -3,14 +3,14 @@ import { piecesNear } from '../geometry/near.ts';
 import { distanceToPiece } from '../geometry/on-piece.ts';
 import { endPiece } from '../geometry/pieces.ts';
 import { type Draft, drawnPosition, endPosition } from './draft.ts';
-import { reachInStrip, StripNeighbours } from './strips.ts';
+import { Strips } from './strips.ts';
 
 /** Answers for drawn ends, before any is carried on, whether their strokes have met a centreline inside its strip (rule 3). */
 export class StripMeetings {
   private readonly draft: Draft;
   /** The marks on each centreline that are meetings. */
   private readonly marks: Groups;
-  private readonly strips: StripNeighbours;
+  private readonly strips: Strips;
 
   constructor(draft: Draft) {
     const { centreline, port } = draft.marks;
@@ -19,7 +19,7 @@ export class StripMeetings {
       draft.pieces.centrelineCount,
       centreline.map((c, mark) => (port[mark] < 0 ? c : -1)),
     );
-    this.strips = new StripNeighbours(draft, (c) => draft.pieces.centrelineChannel[c]);
+    this.strips = new Strips(draft, (c) => draft.pieces.centrelineChannel[c], null);
   }
 
   /**
@@ -57,7 +57,7 @@ export class StripMeetings {
     if (length <= draft.slackMm) return true;
     const direction = (end & 1) === 0 ? -1 : 1;
     const channel = draft.pieces.centrelineChannel[other];
-    return reachInStrip(draft, end >> 1, from, direction, strips, channel, null) >= length - draft.slackMm;
+    return strips.reach(end >> 1, from, direction, channel) >= length - draft.slackMm;
   }
 }
 

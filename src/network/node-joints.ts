@@ -40,7 +40,13 @@ export function classifyNodes(draft: Draft, arcs: Arcs, tally: JointTally): Node
     sideBoundMm: new Float64Array(2 * arcs.arcCount),
     trimming: new Uint8Array(draft.nodes.size),
   };
-  const lengths = new ArmLengths(draft, arcs, sides, seams);
+  const around: Surroundings = {
+    draft,
+    arcs,
+    joints,
+    tally,
+    lengths: new ArmLengths(draft, arcs, sides, seams),
+  };
   for (let node = 0; node + 1 < sides.first.length; node++) {
     const begin = sides.first[node];
     const end = sides.first[node + 1];
@@ -49,19 +55,22 @@ export function classifyNodes(draft: Draft, arcs: Arcs, tally: JointTally): Node
     if (begin === end || (!isWell && (end - begin === 1 || seams[sides.item[begin]] >= 0))) continue;
     const arms: Arm[] = [];
     for (let k = begin; k < end; k++) arms.push(toArm(draft, arcs, sides.item[k]));
-    if (isWell) markWell(draft, joints, tally, node, arms);
-    else classify(draft, arcs, joints, tally, lengths, node, arms);
+    if (isWell) markWell(around, node, arms);
+    else classify(around, node, arms);
   }
   return joints;
 }
 
-function markWell(
-  draft: Draft,
-  joints: NodeJoints,
-  tally: JointTally,
-  node: number,
-  arms: readonly Arm[],
-): void {
+/** What a node is classified by, and where it is written down. */
+interface Surroundings {
+  readonly draft: Draft;
+  readonly arcs: Arcs;
+  readonly joints: NodeJoints;
+  readonly tally: JointTally;
+  readonly lengths: ArmLengths;
+}
+
+function markWell({ draft, joints, tally }: Surroundings, node: number, arms: readonly Arm[]): void {
   const port = draft.chip.ports[node];
   for (const arm of arms) {
     const { ductWidthMm: width, depthMm: depth, stripHalfWidthMm: half } = arm.channel;
@@ -75,11 +84,7 @@ function markWell(
 }
 
 function classify(
-  draft: Draft,
-  arcs: Arcs,
-  joints: NodeJoints,
-  tally: JointTally,
-  lengths: ArmLengths,
+  { draft, arcs, joints, tally, lengths }: Surroundings,
   node: number,
   arms: readonly Arm[],
 ): void {

@@ -6,7 +6,7 @@ import { isEqualDuct, isEqualSize } from './equal-ducts.ts';
 import type { Kept } from './kept.ts';
 import { KeptStrips } from './kept-strips.ts';
 import type { Stops } from './stops.ts';
-import { reachInStrip, StripNeighbours } from './strips.ts';
+import { Strips } from './strips.ts';
 import { TRIM_BY_RULE, TRIM_TO_WALL, type Trim, type Trims, toTrims } from './trims.ts';
 import type { UnitedStrips } from './united-strips.ts';
 
@@ -79,22 +79,20 @@ class Trimmer {
   readonly found: Trim[] = [];
   private readonly draft: Draft;
   private readonly kept: Kept;
-  private readonly strips: UnitedStrips;
-  private readonly neighbours: StripNeighbours;
-  private readonly keptStrips: KeptStrips;
+  private readonly united: UnitedStrips;
+  private readonly strips: Strips;
 
-  constructor(draft: Draft, kept: Kept, strips: UnitedStrips) {
+  constructor(draft: Draft, kept: Kept, united: UnitedStrips) {
     this.draft = draft;
     this.kept = kept;
-    this.strips = strips;
-    this.neighbours = new StripNeighbours(draft, (c) => strips.group[c]);
-    this.keptStrips = new KeptStrips(draft, kept, strips.ends);
+    this.united = united;
+    this.strips = new Strips(draft, (c) => united.group[c], new KeptStrips(draft, kept, united.ends));
   }
 
   /** Trims a centreline from a place at a node on, in one direction, by every strip that meets there. */
   trimArm(here: Meeting, c: number, position: number, direction: 1 | -1): void {
     const { pieces } = this.draft;
-    const own = this.strips.group[c];
+    const own = this.united.group[c];
     for (const group of this.groupsAt(here, c, position, direction)) {
       // Channels of two planes meet in a well alone, and share no etched area.
       if (group === own || pieces.plane[pieces.firstPiece[group]] !== pieces.plane[pieces.firstPiece[c]])
@@ -111,10 +109,10 @@ class Trimmer {
   private groupsAt(here: Meeting, c: number, position: number, direction: 1 | -1): ReadonlySet<number> {
     const { groups } = here;
     if (!here.isCrowded) return groups;
-    const { draft, strips } = this;
+    const { draft, united } = this;
     const near = new Set<number>();
     const add = (line: number): void => {
-      if (groups.has(strips.group[line])) near.add(strips.group[line]);
+      if (groups.has(united.group[line])) near.add(united.group[line]);
     };
     const end = position < 0 ? 2 * c : position > draft.pieces.centrelineLength[c] ? 2 * c + 1 : -1;
     if (end >= 0 && draft.ends.joinedTo[end] >= 0) add(draft.ends.joinedTo[end]);
@@ -132,16 +130,16 @@ class Trimmer {
     direction: 1 | -1,
     factors: Factors,
   ): void {
-    const { draft, kept, strips } = this;
+    const { draft, kept, united, strips } = this;
     let line = c;
     let from = position;
     let way = direction;
     for (;;) {
-      const length = reachInStrip(draft, line, from, way, this.neighbours, group, this.keptStrips, grown);
+      const length = strips.reach(line, from, way, group, grown);
       if (length > 0) this.addTrim(line, from, from + way * length, factors);
       if (draft.pieces.centrelineClosed[line] === 1) return;
       const end = way === 1 ? kept.to[line] : kept.from[line];
-      const next = strips.ends.seamWith[2 * line + (way === 1 ? 1 : 0)];
+      const next = united.ends.seamWith[2 * line + (way === 1 ? 1 : 0)];
       if (next < 0 || Math.abs(from + way * length - end) > draft.slackMm || length <= 0) return;
       line = next >> 1;
       if (line === c) return;
