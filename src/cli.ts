@@ -1,13 +1,9 @@
-import { Command, CommanderError } from 'commander';
+import { Command, CommanderError } from '@commander-js/extra-typings';
 import { declareCommands } from './commands/declare.ts';
+import { EXIT, EXIT_CODES } from './commands/exit-codes.ts';
 import { Interrupted, type Io, WriteError } from './commands/io.ts';
 import { InputError } from './errors.ts';
 import { VERSION } from './version.ts';
-
-export const EXIT_UNUSABLE = 2;
-export const EXIT_NOT_WRITTEN = 3;
-export const EXIT_BUG = 70;
-export const EXIT_INTERRUPTED = 130;
 
 /**
  * The whole program as a function: argv without node and script, the world as `io`; returns the exit code and never throws.
@@ -23,7 +19,7 @@ export async function run(argv: readonly string[], io: Io): Promise<number> {
   try {
     if (argv.length === 0) {
       io.err(`${shortUsage()}\n`);
-      return EXIT_UNUSABLE;
+      return EXIT.unusable;
     }
     await program.parseAsync(argv as string[], { from: 'user' }); // commander types its argument as mutable and does not change it
     return code;
@@ -40,26 +36,26 @@ export async function run(argv: readonly string[], io: Io): Promise<number> {
 
 function codeOf(error: unknown, io: Io): number {
   if (error instanceof CommanderError) {
-    return error.exitCode === 0 ? 0 : EXIT_UNUSABLE;
+    return error.exitCode === 0 ? 0 : EXIT.unusable;
   }
   if (error instanceof InputError) {
     io.err(`rillcheck: ${oneLine(error.message)}\n`);
-    return EXIT_UNUSABLE;
+    return EXIT.unusable;
   }
   if (error instanceof WriteError) {
     io.err(`rillcheck: ${oneLine(error.message)}\n`);
-    return EXIT_NOT_WRITTEN;
+    return EXIT.notWritten;
   }
   if (error instanceof Interrupted) {
     io.err('rillcheck: interrupted; nothing was written\n');
-    return EXIT_INTERRUPTED;
+    return EXIT.interrupted;
   }
   const text = error instanceof Error ? `${error.name}: ${error.message}` : String(error);
   io.err(
     `rillcheck: a bug in rillcheck ${VERSION}: ${oneLine(text)}; please report it with the layout and run sheet (DEBUG=rillcheck shows more)\n`,
   );
   if (io.env.DEBUG === 'rillcheck' && error instanceof Error) io.err(`${error.stack ?? ''}\n`);
-  return EXIT_BUG;
+  return EXIT.bug;
 }
 
 /** Messages may hold names from the drawing: no control characters and no line breaks reach the terminal. */
@@ -73,15 +69,6 @@ function shortUsage(): string {
     'Checks a microfluidic chip drawn as SVG before fabrication. More: rillcheck --help',
   ].join('\n');
 }
-
-const EXIT_CODES = `
-Exit codes:
-  0    ready: no blocker
-  1    hold: at least one blocker
-  2    the layout, run sheet or command line could not be used
-  3    a report could not be written
-  70   a bug in rillcheck
-  130  interrupted`;
 
 function toProgram(io: Io, finish: (code: number) => void, writeHelp: (text: string) => void): Command {
   const program = new Command('rillcheck')
@@ -107,7 +94,7 @@ Examples:
 ${EXIT_CODES}`,
     );
 
-  declareCommands(program, io, finish, EXIT_CODES);
+  declareCommands(program, io, finish);
 
   return program;
 }

@@ -4,18 +4,23 @@
  *
  *   readSvg → layOut → assembleChip (with parseRunSheet) → buildNetwork → solveFlow → findAll → buildReport → writers
  */
-export { type Analysis, type AnalysisInput, analyse, analysePump, type OnStage } from './analyse.ts';
-export { assembleChip, type ChipInput } from './chip/assemble.ts';
+export { type Analysis, type AnalysisInput, analyse, type OnStage } from './analyse.ts';
+export { type CheckLayoutOptions, checkLayout, type LayoutFiles, type SourceFile } from './check-layout.ts';
+export { type Assembled, assembleChip, type ChipInput } from './chip/assemble.ts';
 export type {
   Channel,
   Chip,
   ChipEdge,
   ChipLayer,
-  ChipLimits,
   Fluid,
+  Limits,
+  Mixture,
   Port,
+  PortRun,
   ReadingFault,
+  Run,
 } from './chip/types.ts';
+export { type PdfFileOptions, writePdf } from './commands/pdf.ts';
 export { type DraftInput, draftRunSheet } from './draft/draft.ts';
 export { InputError } from './errors.ts';
 export { findAll } from './findings/check.ts';
@@ -30,8 +35,8 @@ export { type DuctForm, ductForm } from './physics/duct.ts';
 export { writeReachesCsv, writeSegmentsCsv } from './report/csv.ts';
 export { type Detail, writeJson } from './report/json.ts';
 export type { MapQuantity } from './report/reach-values.ts';
-export { buildCasesReport, buildReport, type Report, type ReportedCase } from './report/report.ts';
-export type { CasePart, CasesResult, Result, ResultInput, SingleResult } from './report/result.ts';
+export { buildReport, type Report, type ReportedCase } from './report/report.ts';
+export type { CaseInput, CasePart, CasesResult, ReportInput, Result, SingleResult } from './report/result.ts';
 export type {
   BalanceRow,
   CountsRow,

@@ -1,6 +1,6 @@
 import { scaledCurves } from '../geometry/curve.ts';
 import type { Layout, LayoutItem } from '../layout/types.ts';
-import type { RunSheet } from '../runsheet/types.ts';
+import type { PortEntry, RunSheet } from '../runsheet/types.ts';
 import { readChannels } from './channels.ts';
 import { DEFAULT_JOIN_WITHIN_MM, DEFAULT_JOINTS, OBSTACLE_KIND } from './defaults.ts';
 import { type DrawnEdge, findEdge } from './edge.ts';
@@ -8,14 +8,14 @@ import { readAreas } from './filled.ts';
 import { resolveFluid } from './fluid.ts';
 import { drawnLayers, drawnShapes, refuseUnknownNames } from './known-names.ts';
 import { layerFinder, withDrawnDepths } from './layers.ts';
-import { resolveLimits } from './limits.ts';
+import { resolveLeastWall, resolveLimits } from './limits.ts';
 import { readPorts } from './ports.ts';
 import { circleRing } from './rings.ts';
 import { resolveScale } from './scale.ts';
 import { selectItems } from './select.ts';
-import { settingsFinder } from './settings.ts';
+import { type SettingsFinder, settingsFinder } from './settings.ts';
 import { withTargetsNamed } from './targets.ts';
-import type { Chip, ChipEdge, ReadingFault } from './types.ts';
+import type { Chip, ChipEdge, Port, PortRun, ReadingFault, Run } from './types.ts';
 
 export interface ChipInput {
   readonly layout: Layout;
@@ -23,16 +23,21 @@ export interface ChipInput {
   readonly sheet: RunSheet | null;
   /** The layout's file name, for messages about the drawing. */
   readonly file: string;
-  readonly layoutSha256: string;
+}
+
+/** A chip and how it is run; both are needed for a flow. */
+export interface Assembled {
+  readonly chip: Chip;
+  readonly run: Run;
 }
 
 /**
- * Layout and run sheet as one chip in millimetres: which strokes are channels with which depth, which circles are
- * ports under which conditions, and every limit with where it came from. Faults of the drawing are data in `faults`.
+ * Layout and run sheet as one chip in millimetres (which strokes are channels with which depth, which circles are ports), and as
+ * its run: what each port is set to, and every limit with where it came from. Faults of the drawing are data in `faults`.
  * Cost: n log n in the number of drawn shapes.
  * @throws InputError for a name that the drawing lacks, a contradiction between the two, or a value nobody can compute with
  */
-export function assembleChip({ layout, sheet: written, file, layoutSha256 }: ChipInput): Chip {
+export function assembleChip({ layout, sheet: written, file }: ChipInput): Assembled {
   let sheet = written;
   const joints = sheet?.joints ?? DEFAULT_JOINTS;
   const fluid = resolveFluid(sheet);
@@ -46,8 +51,11 @@ export function assembleChip({ layout, sheet: written, file, layoutSha256 }: Chi
   const { strokes, holes, outlines, ellipses, ignored, setAside } = selectItems(layout, sheet, edge, finder);
   const settings = settingsFinder(sheet, 'channels', sheet?.channels ?? {});
   const conditions = settingsFinder(sheet, 'ports', sheet?.ports ?? {});
-  const drawn = readChannels(strokes, unitMm, finder, settings, file);
+  const drawn = readChannels(strokes, unitMm, finder, file);
+  // also of strokes that turn out to be no channel: their keys have matched
+  for (const name of drawn.drawnNames) settings.of(name);
   const ports = readPorts(holes, unitMm, sheet, limits.portDiameterM.value, file, setAside, conditions);
+  const portRuns = ports.ports.map((port) => portRun(port, conditions));
   if (sheet !== null) {
     sheet = withTargetsNamed(sheet, drawn.drawnNames, ports.drawnNames);
     const names = {
@@ -82,9 +90,8 @@ export function assembleChip({ layout, sheet: written, file, layoutSha256 }: Chi
     : [];
   // The drawing's own size follows when the run sheet says how large its unit is.
   const resize = unitMm / layout.unitMm;
-  return {
+  const chip: Chip = {
     file,
-    layoutSha256,
     unitMm,
     unitReason: scale.reason,
     widthMm: layout.widthMm === null ? null : layout.widthMm * resize,
@@ -99,16 +106,30 @@ export function assembleChip({ layout, sheet: written, file, layoutSha256 }: Chi
     ignored: ignored.toRecord(),
     unreadLines: unreadLines(layout, edge, unitMm, [...channels, ...ports.ports, ...obstacles]),
     faults: [...assumed, ...channelFaults, ...areas.faults],
-    fluid,
     joinWithinMm,
     // Joints one by one are not computed yet: the finding not-computed says what is counted instead.
     joints: joints === 'computed' ? DEFAULT_JOINTS : joints,
     process: sheet?.process ?? null,
+    leastWall: resolveLeastWall(sheet),
+  };
+  const run: Run = {
+    fluid,
+    ports: portRuns,
+    channels: channels.map(({ drawnName }) => (drawnName === null ? null : settings.of(drawnName))),
     limits,
     accept: sheet?.accept ?? [],
     sheet,
   };
+  return { chip, run };
 }
+
+function portRun({ drawnName }: Port, conditions: SettingsFinder<PortEntry>): PortRun {
+  const entry = drawnName === null ? null : conditions.of(drawnName);
+  const { condition, tubing, expect } = entry ?? UNSET;
+  return { condition, tubing, expect };
+}
+
+const UNSET: PortRun = { condition: { kind: 'unset' }, tubing: [], expect: null };
 
 /** Everything drawn with an extent that is none of the things read. */
 function unreadLines(

@@ -3,9 +3,7 @@ import { scaledCurves } from '../geometry/curve.ts';
 import type { Centreline, Stroke } from '../layout/types.ts';
 import { isotropicSection } from '../physics/section.ts';
 import { quote } from '../runsheet/quote.ts';
-import type { ChannelEntry } from '../runsheet/types.ts';
 import { depthOf, type LayerFinder } from './layers.ts';
-import type { SettingsFinder } from './settings.ts';
 import type { Channel, ReadingFault } from './types.ts';
 import { UniqueNames } from './unique-names.ts';
 
@@ -19,15 +17,14 @@ export interface ChannelReading {
 }
 
 /**
- * Strokes as channels: in millimetres, with depth, duct width and settings.
+ * Strokes as channels: in millimetres, with depth and duct width.
  * A stroke without a width or a depth is a fault; one without a width is no channel.
- * @throws InputError for a `data-depth` that is no depth, or a tie between patterns of the run sheet
+ * @throws InputError for a `data-depth` that is no depth
  */
 export function readChannels(
   strokes: readonly Stroke[],
   unitMm: number,
   finder: LayerFinder,
-  settings: SettingsFinder<ChannelEntry>,
   file: string,
 ): ChannelReading {
   const drawnNames = new Set<string>();
@@ -38,7 +35,6 @@ export function readChannels(
   for (let i = 0; i < strokes.length; i++) {
     const stroke = strokes[i]!;
     const name = stroke.name === null ? names.ofUnnamed(`channel-${i + 1}`) : names.ofDrawn(stroke.name);
-    const own = stroke.name === null ? null : settings.of(stroke.name);
     if (stroke.width === null || !(stroke.width > 0)) {
       faults.push({ kind: 'unsized-stroke', name, ...startOf(stroke, unitMm) });
       continue;
@@ -72,7 +68,6 @@ export function readChannels(
       centrelines: unitMm === 1 ? stroke.centrelines : stroke.centrelines.map((line) => inMm(line, unitMm)),
       disguises: stroke.disguises,
       dataChannel: stroke.dataChannel,
-      settings: own,
     });
   }
   return { channels, faults, drawnNames, isMade: (name) => names.isMade(name) };

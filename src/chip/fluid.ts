@@ -31,10 +31,43 @@ export function resolveFluid(sheet: RunSheet | null): Fluid {
         sheet.lineOf(['ports', name, 'tubing', i]) === null
           ? ['ports', name, 'tubing']
           : ['ports', name, 'tubing', i];
-      known(sheet, [...path, 'temperature'], () => fluid.viscosityAt(at));
+      known(sheet, [...path, 'temperature'], () => viscosityAt(fluid, at));
     }
   }
   return fluid;
+}
+
+/** Viscosity (Pa s) of the same fluid at another temperature (K), as in tubing. */
+export function viscosityAt({ mixture, viscosityPaS }: Fluid, temperatureK: number): number {
+  switch (mixture.kind) {
+    case 'water':
+      return waterViscosity(temperatureK);
+    case 'glycerol':
+      return glycerolViscosity(temperatureK, mixture.massShare);
+    case 'custom':
+      return viscosityPaS;
+    default:
+      return mixture satisfies never;
+  }
+}
+
+/** Density (kg/m³) of the same fluid at another temperature (K). */
+export function densityAt({ mixture, densityKgM3 }: Fluid, temperatureK: number): number {
+  switch (mixture.kind) {
+    case 'water':
+      return waterDensity(temperatureK);
+    case 'glycerol':
+      return glycerolDensity(temperatureK, mixture.massShare);
+    case 'custom':
+      return densityKgM3;
+    default:
+      return mixture satisfies never;
+  }
+}
+
+/** Whether the fluid is another at another temperature. */
+export function feelsTemperature({ mixture }: Fluid): boolean {
+  return mixture.kind !== 'custom';
 }
 
 function fluidOf(spec: FluidSpec, temperatureK: number, temperatureGiven: boolean): Fluid {
@@ -46,8 +79,7 @@ function fluidOf(spec: FluidSpec, temperatureK: number, temperatureGiven: boolea
         viscosityPaS: waterViscosity(temperatureK),
         densityKgM3: waterDensity(temperatureK),
         source: 'IAPWS SR6-08(2011)',
-        viscosityAt: waterViscosity,
-        densityAt: waterDensity,
+        mixture: { kind: 'water' },
       };
     case 'custom':
       return {
@@ -56,7 +88,7 @@ function fluidOf(spec: FluidSpec, temperatureK: number, temperatureGiven: boolea
         viscosityPaS: spec.viscosityPaS,
         densityKgM3: spec.densityKgM3,
         source: temperatureGiven ? 'run sheet; the temperature given is ignored' : 'run sheet',
-        viscosityAt: () => spec.viscosityPaS,
+        mixture: { kind: 'custom' },
       };
     case 'glycerol': {
       const mass = spec.by === 'mass' ? spec.share : massFractionFromVolume(spec.share, temperatureK);
@@ -67,9 +99,7 @@ function fluidOf(spec: FluidSpec, temperatureK: number, temperatureGiven: boolea
         viscosityPaS: glycerolViscosity(temperatureK, mass),
         densityKgM3: glycerolDensity(temperatureK, mass),
         source: 'viscosity: Cheng 2008; density: Volk & Kähler 2018',
-        // The mixture keeps its mass fraction in warmer or colder tubing.
-        viscosityAt: (kelvin) => glycerolViscosity(kelvin, mass),
-        densityAt: (kelvin) => glycerolDensity(kelvin, mass),
+        mixture: { kind: 'glycerol', massShare: mass },
       };
     }
     default:

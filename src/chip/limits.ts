@@ -1,22 +1,41 @@
-import type { Limits, ProcessName, RunSheet } from '../runsheet/types.ts';
+import type { Limits as GivenLimits, ProcessName, RunSheet } from '../runsheet/types.ts';
 import { DEFAULT_MAX_REYNOLDS, DEFAULT_PORT_DIAMETER_M } from './defaults.ts';
-import type { ChipLimits, Sourced } from './types.ts';
+import type { Chip, LeastWall, Limits, Sourced } from './types.ts';
 
 /** Rounding never decides against the drawing: every limit, window and ceiling is passed only by more than this share of it. */
 export const LIMIT_SLACK = 1e-6;
 
+/** The thinnest wall with where it came from: the run sheet, else what is usual for the process, else null. */
+export function resolveLeastWall(sheet: RunSheet | null): LeastWall | null {
+  const given = sheet?.limits.minWallM ?? null;
+  if (given !== null) return { flatM: given, perDepth: 0, origin: 'run sheet' };
+  return sheet?.process == null
+    ? null
+    : { ...USUAL[sheet.process].leastWall, origin: 'typical value, not from your maker' };
+}
+
+/** Thinnest wall (m) beside a channel of a depth (m); of an unknown depth what holds at any. */
+export function minWallM({ leastWall }: Pick<Chip, 'leastWall'>, depthM: number): Sourced<number> | null {
+  if (leastWall === null) return null;
+  const { flatM, perDepth, origin } = leastWall;
+  return { value: flatM + perDepth * (Number.isFinite(depthM) ? depthM : 0), origin };
+}
+
+/** The same in drawing units: mm, of a depth in mm. */
+export function minWallMm(chip: Pick<Chip, 'leastWall'>, depthMm: number): Sourced<number> | null {
+  const limit = minWallM(chip, depthMm / 1e3);
+  return limit === null ? null : { value: limit.value * 1e3, origin: limit.origin };
+}
+
 /**
- * Every limit with where it came from: the run sheet, else what is usual for the process, else none.
+ * Every other limit with where it came from: the run sheet, else what is usual for the process, else none.
  * Only the port diameter and the Reynolds number have a default without a process.
  */
-export function resolveLimits(sheet: RunSheet | null): ChipLimits {
-  const given: Partial<Limits> = sheet?.limits ?? {};
+export function resolveLimits(sheet: RunSheet | null): Limits {
+  const given: Partial<GivenLimits> = sheet?.limits ?? {};
   const usual: Partial<Usual> = sheet?.process == null ? {} : USUAL[sheet.process];
-  const wall = given.minWallM ?? null;
-  const usualWall = usual.minWallM;
   return {
     minWidthM: choose(given.minWidthM, usual.minWidthM),
-    minWallM: (depthM) => choose(wall, usualWall?.(Number.isFinite(depthM) ? depthM : 0)),
     maxWidthToDepth: choose(given.maxWidthToDepth, usual.maxWidthToDepth),
     maxDepthToWidth: choose(given.maxDepthToWidth, usual.maxDepthToWidth),
     edgeMarginM: choose(given.edgeMarginM, usual.edgeMarginM),
@@ -33,7 +52,7 @@ export function resolveLimits(sheet: RunSheet | null): ChipLimits {
 
 interface Usual {
   readonly minWidthM: number;
-  readonly minWallM: (depthM: number) => number;
+  readonly leastWall: Pick<LeastWall, 'flatM' | 'perDepth'>;
   readonly maxWidthToDepth: number | null;
   readonly maxDepthToWidth: number;
   readonly edgeMarginM: number;
@@ -46,7 +65,7 @@ interface Usual {
 const USUAL: Readonly<Record<ProcessName, Usual>> = {
   'cast elastomer': {
     minWidthM: 20e-6,
-    minWallM: () => 30e-6,
+    leastWall: { flatM: 30e-6, perDepth: 0 },
     maxWidthToDepth: 10,
     maxDepthToWidth: 2,
     edgeMarginM: 2e-3,
@@ -57,7 +76,7 @@ const USUAL: Readonly<Record<ProcessName, Usual>> = {
   'etched glass': {
     minWidthM: 20e-6,
     // An isotropic etch undercuts the mask by its depth on either side.
-    minWallM: (depthM) => 50e-6 + 2 * depthM,
+    leastWall: { flatM: 50e-6, perDepth: 2 },
     maxWidthToDepth: null,
     maxDepthToWidth: 0.5,
     edgeMarginM: 1e-3,
@@ -67,7 +86,7 @@ const USUAL: Readonly<Record<ProcessName, Usual>> = {
   },
   'etched silicon': {
     minWidthM: 5e-6,
-    minWallM: () => 10e-6,
+    leastWall: { flatM: 10e-6, perDepth: 0 },
     maxWidthToDepth: null,
     maxDepthToWidth: 15,
     edgeMarginM: 1e-3,
@@ -77,7 +96,7 @@ const USUAL: Readonly<Record<ProcessName, Usual>> = {
   },
   'milled thermoplastic': {
     minWidthM: 200e-6,
-    minWallM: () => 200e-6,
+    leastWall: { flatM: 200e-6, perDepth: 0 },
     maxWidthToDepth: 50,
     maxDepthToWidth: 2.5,
     edgeMarginM: 2e-3,
@@ -87,7 +106,7 @@ const USUAL: Readonly<Record<ProcessName, Usual>> = {
   },
   'moulded thermoplastic': {
     minWidthM: 50e-6,
-    minWallM: () => 100e-6,
+    leastWall: { flatM: 100e-6, perDepth: 0 },
     maxWidthToDepth: 50,
     maxDepthToWidth: 2,
     edgeMarginM: 2e-3,

@@ -23,7 +23,7 @@ export interface PortReading {
 /**
  * Circles as ports: of the right size and layer, concentric ones together with the largest as the well.
  * @param diameterM smallest and largest, both included with a relative slack of 1e-6
- * @throws InputError when two ports have one name, or a tie between patterns of the run sheet
+ * @throws InputError when two ports have one name
  */
 export function readPorts(
   holes: readonly Hole[],
@@ -67,20 +67,16 @@ export function readPorts(
   const drawnNames = new Set<string>();
   for (const { name } of drawn) if (name !== null) drawnNames.add(name);
   const names = new UniqueNames(drawnNames);
-  const ports = drawn.map(({ well, name }, i): Port => {
-    const entry = name === null ? null : settings.of(name);
-    return {
+  const ports = drawn.map(
+    ({ well, name }, i): Port => ({
       name: name === null ? names.ofUnnamed(`port-${i + 1}`) : names.ofDrawn(name),
       drawnName: name,
       ordinal: well.ordinal,
       xMm: well.x * unitMm,
       yMm: well.y * unitMm,
       radiusMm: well.radius * unitMm,
-      condition: entry?.condition ?? { kind: 'unset' },
-      tubing: entry?.tubing ?? [],
-      expect: entry?.expect ?? null,
-    };
-  });
+    }),
+  );
   return { ports, unsuitable, outside, drawnNames, isMade: (name) => names.isMade(name) };
 }
 

@@ -1,5 +1,5 @@
 import type { PumpLimitEntry } from '../runsheet/types.ts';
-import type { Chip, Sourced } from './types.ts';
+import type { Run, Sourced } from './types.ts';
 
 /** What the pump at one port can do, each limit with where it comes from. */
 export interface PumpLimits {
@@ -15,7 +15,7 @@ const USUAL = { minPressurePa: -80e3, maxPressurePa: 700e3, maxFlowM3s: 10e-6 / 
  * The limits that the run sheet gives; null where it gives none for the port.
  * @param drawnName of the port
  */
-export function givenPumpLimits({ sheet }: Pick<Chip, 'sheet'>, drawnName: string | null): PumpLimits | null {
+export function givenPumpLimits({ sheet }: Pick<Run, 'sheet'>, drawnName: string | null): PumpLimits | null {
   const given = drawnName === null ? undefined : sheet?.pumpLimits[drawnName];
   if (given === undefined) return null;
   const sourced = (value: number | null): Sourced<number> | null =>
@@ -28,8 +28,8 @@ export function givenPumpLimits({ sheet }: Pick<Chip, 'sheet'>, drawnName: strin
 }
 
 /** What a found setting is held against: what the run sheet gives, else what is usual. */
-export function foundPumpLimits(chip: Pick<Chip, 'sheet'>, drawnName: string | null): PumpLimits {
-  const given = givenPumpLimits(chip, drawnName);
+export function foundPumpLimits(run: Pick<Run, 'sheet'>, drawnName: string | null): PumpLimits {
+  const given = givenPumpLimits(run, drawnName);
   const usual = (value: number): Sourced<number> => ({ value, origin: 'typical value, not from your maker' });
   return {
     minPressurePa: given?.minPressurePa ?? usual(USUAL.minPressurePa),

@@ -25,11 +25,16 @@ export interface Fluid {
   readonly densityKgM3: number;
   /** Published source of the values, or "run sheet". */
   readonly source: string;
-  /** Viscosity of the same fluid at another temperature (tubing); a custom fluid ignores it. */
-  readonly viscosityAt: (temperatureK: number) => number;
-  /** Density of the same fluid at another temperature; left out where it does not change (a custom fluid). */
-  readonly densityAt?: (temperatureK: number) => number;
+  /** What it is made of: how it changes with temperature follows from it (`fluid.ts`). */
+  readonly mixture: Mixture;
 }
+
+/** `massShare` is the glycerol in the mixture, 0…1: it stays in warmer or colder tubing. */
+export type Mixture =
+  | { readonly kind: 'water' }
+  | { readonly kind: 'glycerol'; readonly massShare: number }
+  /** Given by its values, which no temperature changes. */
+  | { readonly kind: 'custom' };
 
 export interface ChipLayer {
   /** As drawn (or "" for strokes in no layer). */
@@ -68,7 +73,6 @@ export interface Channel {
   readonly disguises: readonly string[];
   /** The drawing says that it is a channel (`data-channel`). */
   readonly dataChannel: boolean;
-  readonly settings: ChannelEntry | null;
 }
 
 export interface Port {
@@ -79,9 +83,6 @@ export interface Port {
   readonly xMm: number;
   readonly yMm: number;
   readonly radiusMm: number;
-  readonly condition: PortCondition;
-  readonly tubing: readonly TubingPiece[];
-  readonly expect: 'in' | 'out' | null;
 }
 
 export interface ChipEdge {
@@ -94,10 +95,16 @@ export interface ChipEdge {
   readonly sidesMm: readonly [number, number];
 }
 
+/** The thinnest wall: what is usual for some processes grows with the depth of the channels beside it. */
+export interface LeastWall {
+  readonly flatM: number;
+  readonly perDepth: number;
+  readonly origin: Origin;
+}
+
 /** All limits with their origin; null = nobody gave one and no process implies one: not checked, listed as not run. */
-export interface ChipLimits {
+export interface Limits {
   readonly minWidthM: Sourced<number> | null;
-  readonly minWallM: (depthM: number) => Sourced<number> | null;
   readonly maxWidthToDepth: Sourced<number> | null;
   readonly maxDepthToWidth: Sourced<number> | null;
   readonly edgeMarginM: Sourced<number> | null;
@@ -164,10 +171,13 @@ export type ReadingFault =
       readonly yMm: number;
     };
 
+/**
+ * What is made: what the drawing shows, in millimetres, and how deep it is. Plain data, the same for all cases of a run sheet
+ * that draw and etch the chip alike; how it is run is a Run.
+ */
 export interface Chip {
   /** The layout's file name as given, without folders. */
   readonly file: string;
-  readonly layoutSha256: string;
   readonly unitMm: number;
   readonly unitReason: string;
   /** Size of the drawing (viewport) in mm. */
@@ -185,11 +195,28 @@ export interface Chip {
   /** Lines of what is drawn and not read, for the picture; mm, x0 y0 x1 y1 … */
   readonly unreadLines: readonly Float64Array[];
   readonly faults: readonly ReadingFault[];
-  readonly fluid: Fluid;
   readonly joinWithinMm: number;
   readonly joints: 'resolved' | 'centreline';
   readonly process: ProcessName | null;
-  readonly limits: ChipLimits;
+  /** null where nobody gave one: not checked. */
+  readonly leastWall: LeastWall | null;
+}
+
+/** What a port is set to. */
+export interface PortRun {
+  readonly condition: PortCondition;
+  readonly tubing: readonly TubingPiece[];
+  readonly expect: 'in' | 'out' | null;
+}
+
+/** How a chip is run, and what is asked of it: one case of a run sheet. Plain data. */
+export interface Run {
+  readonly fluid: Fluid;
+  /** In the order of Chip.ports. */
+  readonly ports: readonly PortRun[];
+  /** What is asked of each channel, in the order of Chip.channels; null where nothing is. */
+  readonly channels: readonly (ChannelEntry | null)[];
+  readonly limits: Limits;
   readonly accept: readonly AcceptEntry[];
   readonly sheet: RunSheet | null;
 }

@@ -1,32 +1,19 @@
-import { type Command, InvalidArgumentError, Option } from 'commander';
+import { type Command, InvalidArgumentError, Option } from '@commander-js/extra-typings';
+import { EXIT_CODES } from './exit-codes.ts';
 import type { Io } from './io.ts';
 import { FORMATS } from './options.ts';
 
-interface Declaring {
-  readonly program: Command;
-  readonly io: Io;
-  readonly finish: (code: number) => void;
-  /** Ends each command's help. */
-  readonly exitCodes: string;
-}
-
 /** Declares every command. What a command needs is loaded when it runs, so that help and version start at once. */
-export function declareCommands(
-  program: Command,
-  io: Io,
-  finish: (code: number) => void,
-  exitCodes: string,
-): void {
-  const declaring = { program, io, finish, exitCodes };
-  declareCheck(declaring);
-  declarePump(declaring);
-  declareSpread(declaring);
-  declareSection(declaring);
-  declareDraft(declaring);
+export function declareCommands(program: Command, io: Io, finish: (code: number) => void): void {
+  declareCheck(program, io, finish);
+  declarePump(program, io, finish);
+  declareSpread(program, io, finish);
+  declareSection(program, io, finish);
+  declareDraft(program, io, finish);
 }
 
 /** The main job. */
-function declareCheck({ program, io, finish, exitCodes }: Declaring): void {
+function declareCheck(program: Command, io: Io, finish: (code: number) => void): void {
   layoutOptions(program.command('check'))
     .description('read, check, solve and report a layout')
     .argument('<LAYOUT>', 'the SVG drawing of the chip')
@@ -37,16 +24,16 @@ Examples:
   rillcheck check chip.svg -o out -f pdf,csv
   rillcheck check chip.svg --json --detail ports
   rillcheck check chip.svg --colour shear --quiet
-${exitCodes}`,
+${EXIT_CODES}`,
     )
-    .action(async (layout: string, options) => {
+    .action(async (layout, options) => {
       const { check } = await import('./all.ts');
       finish(await check(layout, options, io));
     });
 }
 
 /** Settings for targets. */
-function declarePump({ program, io, finish, exitCodes }: Declaring): void {
+function declarePump(program: Command, io: Io, finish: (code: number) => void): void {
   layoutOptions(program.command('pump'))
     .description('find the pump settings that meet the targets of the run sheet, and check the chip at them')
     .argument('<LAYOUT>', 'the SVG drawing of the chip')
@@ -61,16 +48,16 @@ Examples:
   rillcheck pump chip.svg                          settings on the terminal, reports/chip.pump.pdf to sign
   rillcheck pump chip.svg --json --detail ports    exact settings as JSON
   rillcheck pump chip.svg --case culture           only this case of the run sheet
-${exitCodes}`,
+${EXIT_CODES}`,
     )
-    .action(async (layout: string, options) => {
+    .action(async (layout, options) => {
       const { pump } = await import('./all.ts');
       finish(await pump(layout, options, io));
     });
 }
 
 /** Fabrication tolerances. */
-function declareSpread({ program, io, finish, exitCodes }: Declaring): void {
+function declareSpread(program: Command, io: Io, finish: (code: number) => void): void {
   layoutOptions(program.command('spread'))
     .description('how far fabrication tolerances move every result, and which of them to pay for')
     .argument('<LAYOUT>', 'the SVG drawing of the chip')
@@ -87,17 +74,17 @@ Examples:
   rillcheck spread chip.svg                              10 000 draws; reports/chip.spread.pdf with pages on the spread
   rillcheck spread chip.svg --draws 2000 --json --detail ports
   rillcheck spread chip.svg -f csv --samples draws.csv   quantiles in reports/chip.spread.csv, every draw in draws.csv
-${exitCodes}
+${EXIT_CODES}
        Ctrl-C while draws are made reports those made so far, marked as such`,
     )
-    .action(async (layout: string, options) => {
+    .action(async (layout, options) => {
       const { spread } = await import('./all.ts');
       finish(await spread(layout, options, io));
     });
 }
 
 /** One duct. */
-function declareSection({ program, io, finish, exitCodes }: Declaring): void {
+function declareSection(program: Command, io: Io, finish: (code: number) => void): void {
   program
     .command('section')
     .description('one straight duct without a layout: resistance, flow, pressure, wall shear')
@@ -112,7 +99,7 @@ function declareSection({ program, io, finish, exitCodes }: Declaring): void {
     .option('--temperature <TEMPERATURE>', 'of the water (default: 25 degC)')
     .addOption(
       new Option('--profile <PROFILE>', 'isotropic is wet-etched: the width is then the mask’s')
-        .choices(['rectangle', 'isotropic'])
+        .choices(['rectangle', 'isotropic'] as const)
         .default('rectangle'),
     )
     .option('--json', 'print the result as JSON')
@@ -123,7 +110,7 @@ Examples:
   rillcheck section --width "500 um" --depth "50 um" --length "20 mm" --flow "10 uL/min"
   rillcheck section --width "1 mm" --depth "120 um" --length "40 mm" --wall-shear "0.3 Pa" --temperature "37 degC"
   rillcheck section --width "100 um" --depth "50 um" --length "10 mm" --pressure "12 kPa" --viscosity "1 mPa s" --density "1000 kg/m^3" --json
-${exitCodes}`,
+${EXIT_CODES}`,
     )
     .action(async (options) => {
       const { section } = await import('./all.ts');
@@ -132,7 +119,7 @@ ${exitCodes}`,
 }
 
 /** A first run sheet. */
-function declareDraft({ program, io, finish, exitCodes }: Declaring): void {
+function declareDraft(program: Command, io: Io, finish: (code: number) => void): void {
   program
     .command('draft')
     .description('write a first run sheet for a layout, with what must be filled in marked')
@@ -146,16 +133,16 @@ Examples:
   rillcheck draft chip.svg              writes chip.run.yaml beside it; never over one that is there
   rillcheck draft chip.svg --run -      prints it
   rillcheck draft chip.svg --force      begins anew
-${exitCodes}`,
+${EXIT_CODES}`,
     )
-    .action(async (layout: string, options) => {
+    .action(async (layout, options) => {
       const { draft } = await import('./all.ts');
       finish(await draft(layout, options, io));
     });
 }
 
 /** Options of every command that reads, solves and reports a layout. */
-function layoutOptions(command: Command): Command {
+function layoutOptions(command: Command) {
   return command
     .option('-r, --run <FILE>', 'the run sheet (default: LAYOUT with .run.yaml; - for stdin)')
     .option('--case <NAME>', 'only this case')
@@ -164,12 +151,12 @@ function layoutOptions(command: Command): Command {
     .option('--json', 'print the result on stdout as JSON, and nothing else there')
     .addOption(
       new Option('--detail <LEVEL>', 'how deep JSON goes')
-        .choices(['ports', 'reaches', 'segments'])
+        .choices(['ports', 'reaches', 'segments'] as const)
         .default('segments'),
     )
     .addOption(
       new Option('--colour <QUANTITY>', 'what colours the SVG picture')
-        .choices(['shear', 'pressure', 'flow', 'residence'])
+        .choices(['shear', 'pressure', 'flow', 'residence'] as const)
         .default('pressure'),
     )
     .addOption(

@@ -6,14 +6,14 @@ export const FORMATS = ['pdf', 'svg', 'csv', 'json'] as const;
 export type Format = (typeof FORMATS)[number];
 
 /** What commander hands over for the commands that read a layout. */
-export interface CheckOptions {
+export interface LayoutOptions {
   readonly run?: string;
   readonly case?: string;
   readonly out: string;
   readonly formats?: string;
-  readonly json?: boolean;
+  readonly json?: true;
   readonly detail: Detail;
-  readonly quiet?: boolean;
+  readonly quiet?: true;
   readonly colour: MapQuantity;
   readonly paper: 'a4' | 'letter';
   /** False with --no-color. */
@@ -21,7 +21,7 @@ export interface CheckOptions {
 }
 
 /** The report formats asked for. Errors: InputError for a word that is no format. */
-export function formatsOf(options: Pick<CheckOptions, 'formats' | 'json'>): readonly Format[] {
+export function formatsOf(options: Pick<LayoutOptions, 'formats' | 'json'>): readonly Format[] {
   const text = options.formats ?? (options.json === true ? 'none' : 'pdf,svg');
   const words = text
     .split(',')

@@ -2,6 +2,7 @@ import { createHash } from 'node:crypto';
 import { readFile, stat } from 'node:fs/promises';
 import { basename, isAbsolute, join } from 'node:path';
 import { InputError } from '../errors.ts';
+import { utf8Length } from '../utf8-length.ts';
 import type { Io } from './io.ts';
 
 export const MAX_LAYOUT_BYTES = 32 * 1024 * 1024;
@@ -35,8 +36,7 @@ export async function readRunSheet(
 ): Promise<InputFile | null> {
   if (named === '-') {
     const text = await io.readStdin();
-    if (Buffer.byteLength(text) > MAX_RUN_SHEET_BYTES)
-      throw tooLarge('stdin', 'run sheet', MAX_RUN_SHEET_BYTES);
+    if (utf8Length(text) > MAX_RUN_SHEET_BYTES) throw tooLarge('stdin', 'run sheet', MAX_RUN_SHEET_BYTES);
     return { shown: 'stdin', path: null, name: 'stdin', text, sha256: sha256(text) };
   }
   const path = named ?? defaultRunSheet(layoutPath);

@@ -5,7 +5,8 @@ import { cleanText, wrapText } from '../report/plain-text.ts';
 import type { Report } from '../report/report.ts';
 import { writeSpreadCsv } from '../report/spread-csv.ts';
 import type { Io } from './io.ts';
-import type { CheckOptions, Format } from './options.ts';
+import type { Format, LayoutOptions } from './options.ts';
+import { writePdf } from './pdf.ts';
 import type { Progress } from './progress.ts';
 import { type InputFile, resolveIn } from './read-files.ts';
 import { refuseOverwriting } from './refuse-overwriting.ts';
@@ -18,7 +19,7 @@ export interface ReportPlan {
   readonly names: ReportNames;
   /** What was read: nothing is written over it. */
   readonly inputs: readonly InputFile[];
-  readonly options: Pick<CheckOptions, 'out' | 'json' | 'detail' | 'colour' | 'paper'>;
+  readonly options: Pick<LayoutOptions, 'out' | 'json' | 'detail' | 'colour' | 'paper'>;
   /** Files of the command's own, written with the reports, all or none. */
   readonly more?: readonly ShownFile[];
 }
@@ -103,13 +104,7 @@ function filesOf({ report, names, options }: ReportPlan, format: Format, io: Io)
       return [
         {
           name: names.whole('pdf'),
-          content: async () => {
-            const [{ writePdf }, { readFonts }] = await Promise.all([
-              import('../report/pdf/document.ts'),
-              import('./fonts.ts'),
-            ]);
-            return writePdf(report, { fonts: await readFonts(), paper: options.paper, date: io.now });
-          },
+          content: () => writePdf(report, { paper: options.paper, date: io.now }),
         },
       ];
     default:

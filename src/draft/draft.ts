@@ -5,6 +5,7 @@ import type { Channel, Chip } from '../chip/types.ts';
 import type { Layout } from '../layout/types.ts';
 import { isPattern, layerKey } from '../runsheet/names.ts';
 import { formatMm } from '../runsheet/shown.ts';
+import { utf8Length } from '../utf8-length.ts';
 import { type PillarField, pillarFields } from './pillars.ts';
 import { NO_LAYER, proposePlanes } from './planes.ts';
 import { commentText, isDraftable, keyText } from './yaml-text.ts';
@@ -26,7 +27,7 @@ const MOST_BYTES = 900_000;
  * @throws InputError as assembleChip, for a layout that nothing can be made of
  */
 export function draftRunSheet({ layout, file, tool }: DraftInput): string {
-  const chip = assembleChip({ layout, sheet: null, file, layoutSha256: '0'.repeat(64) });
+  const { chip } = assembleChip({ layout, sheet: null, file });
   const groupsOf = groupsByOrdinal(layout);
   const fields = pillarFields(chip);
   const layers = layerLines(chip, groupsOf);
@@ -37,7 +38,7 @@ export function draftRunSheet({ layout, file, tool }: DraftInput): string {
     ...channelLines(chip, groupsOf),
     ...rest(chip, fields),
   ].join('\n');
-  if (Buffer.byteLength(whole) <= MOST_BYTES) return `${whole}\n`;
+  if (utf8Length(whole) <= MOST_BYTES) return `${whole}\n`;
   const short = [
     ...head(chip, layout, tool, groupsOf, fields),
     ...layers,

@@ -26,11 +26,11 @@ export function findAll(context: FindingContext, rules: readonly Rule[] = RULES)
   }
   const notRun = onePerRule(skipped);
   const ruleNames = new Set(rules.flatMap(({ names }) => names));
-  const { chip } = context;
+  const { chip, run } = context;
   const findings = acceptFindings(
     raw,
     notRun,
-    chip.accept,
+    run.accept,
     ruleNames,
     showFor(context),
     madeUpNames(chip),

@@ -1,5 +1,6 @@
-import type { Chip } from '../chip/types.ts';
+import type { Chip, Run } from '../chip/types.ts';
 import type { Network } from '../network/types.ts';
+import type { FoundSettings } from '../solve/targets.ts';
 import type { FlowState } from '../solve/types.ts';
 
 /** Everything that a rule may look at. */
@@ -7,8 +8,11 @@ export interface FindingContext {
   /** The network's own chip. */
   readonly chip: Chip;
   readonly network: Network;
+  readonly run: Run;
   /** null when nothing was solved: only the rules of the drawing run. */
   readonly flow: FlowState | null;
+  /** Settings that were found for ports, at which the chip is then judged; left out where all are given. */
+  readonly found?: FoundSettings;
 }
 
 /**

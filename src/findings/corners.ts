@@ -11,7 +11,7 @@ export const cornerRules: readonly Rule[] = [
   limitRule(
     'sharp-corner',
     'min_corner_angle',
-    ({ chip }) => chip.limits.minCornerAngleRad,
+    ({ run }) => run.limits.minCornerAngleRad,
     (context, limit) => {
       const faults = [...cornersAtVertices(context, limit.value), ...cornersOfLines(context, limit.value)];
       return faults.map(({ angleRad, xMm, yMm, names }) => {

@@ -27,9 +27,9 @@ export type DeadKind = 'alone' | 'undriven' | 'unheld';
 
 /** The dead parts of the chip, by number; none while nothing is solved. Cost: linear in the ports and parts. */
 export const deadParts: (context: FindingContext) => readonly DeadPart[] = oncePerContext((context) => {
-  const { chip, flow } = context;
+  const { run, flow } = context;
   if (flow === null) return [];
-  const drives = drivesOf(chip);
+  const drives = drivesOf(run);
   const all = flow.parts.map(({ ports }, part) => stateOf(context, drives, part, ports));
   return all.flatMap((one): DeadPart[] => {
     if (one.kind === 'live' || one.kind === 'stray' || isLoose(context, one)) return [];
@@ -104,9 +104,9 @@ function isLoose(context: FindingContext, { part, ports }: PartState): boolean {
 }
 
 /** A port that is only held may be a control line; one that must pass fluid can't do so alone. */
-function severityAlone({ chip }: FindingContext, ports: readonly number[]): DeadPart['severity'] {
+function severityAlone({ run }: FindingContext, ports: readonly number[]): DeadPart['severity'] {
   const mustFlow = ports.some((port) => {
-    const { condition, expect } = chip.ports[port];
+    const { condition, expect } = run.ports[port];
     return condition.kind === 'open' || condition.kind === 'flow' || expect !== null;
   });
   return mustFlow ? 'blocker' : 'caution';

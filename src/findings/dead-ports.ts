@@ -27,8 +27,8 @@ export const gapOfDeadPart: (context: FindingContext) => ReadonlyMap<number, Gap
 );
 
 /** Whether another part has a port that fluid may pass; one without a condition may yet be given one. */
-function hasElsewhere({ chip, flow }: FindingContext, part: number): boolean {
-  const passes = (port: number): boolean => chip.ports[port].condition.kind !== 'sealed';
+function hasElsewhere({ run, flow }: FindingContext, part: number): boolean {
+  const passes = (port: number): boolean => run.ports[port].condition.kind !== 'sealed';
   return flow?.parts.some(({ ports }, other) => other !== part && ports.some(passes)) ?? false;
 }
 
@@ -78,12 +78,12 @@ function whatIsDead(context: FindingContext, { ports, kind }: DeadPart): string 
   }
 }
 
-function wayOut({ chip, flow }: FindingContext, { part, ports }: DeadPart, gap: Gap | null): string {
+function wayOut({ chip, run, flow }: FindingContext, { part, ports }: DeadPart, gap: Gap | null): string {
   const short = gap?.stopsShort ?? null;
   if (short !== null) return `close the gap: carry ${short.channel} on to ${short.of} there`;
   const { name } = chip.ports[ports[0]];
   const idle = flow?.parts[part].ports.find((port) => !ports.includes(port));
-  const other = idle === undefined ? null : chip.ports[idle];
-  const set = other === null ? '' : `, or set ${other.name} (${other.condition.kind}) to open`;
+  const set =
+    idle === undefined ? '' : `, or set ${chip.ports[idle].name} (${run.ports[idle].condition.kind}) to open`;
   return `draw a channel from the part of ${name} to the port it was meant to reach${set}`;
 }

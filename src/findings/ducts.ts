@@ -35,12 +35,12 @@ export interface ReachState {
 
 /** State of one reach; null where its section or its flow is unknown. Cheap: made on demand. */
 export function reachState(context: FindingContext, reach: number): ReachState | null {
-  const { network, flow, chip } = context;
+  const { network, flow, run } = context;
   const form = channelForms(context)[network.reachChannel[reach]];
   if (flow === null || form === null) return null;
   const flowM3s = Math.abs(flow.reachFlow[reach]);
   if (Number.isNaN(flowM3s)) return null;
-  const { viscosityPaS, densityKgM3 } = chip.fluid;
+  const { viscosityPaS, densityKgM3 } = run.fluid;
   const meanVelocity = flowM3s / form.areaM2;
   const reynolds = reynoldsNumber(densityKgM3, meanVelocity, form.hydraulicDiameterM, viscosityPaS);
   return {

@@ -30,14 +30,14 @@ export const edgeRules: readonly Rule[] = [
 const NO_EDGE = 'the drawing has no chip edge';
 
 function nearEdge(context: FindingContext): RuleOutcome {
-  const { chip } = context;
+  const { chip, run } = context;
   if (chip.edge === null) {
     return {
       findings: [],
       notRun: ['outside-chip', 'edge-margin'].map((rule) => ({ rule, why: NO_EDGE })),
     };
   }
-  const margin = chip.limits.edgeMarginM;
+  const margin = run.limits.edgeMarginM;
   const marginMm = margin === null ? 0 : margin.value * 1e3;
   const findings = findEdgeFaults(context, chip.edge, marginMm).map((fault) => {
     if (fault.gapMm < 0) return outside(fault);

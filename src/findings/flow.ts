@@ -1,3 +1,4 @@
+import { reachName } from '../network/names.ts';
 import type { FindingContext } from './context.ts';
 import { deadPartAt } from './dead-parts.ts';
 import { middleOfReach, othersText, reachesOf, reachNames, worstReach } from './reaches.ts';
@@ -51,7 +52,7 @@ function stagnant(context: FindingContext): RuleOutcome {
       (magnitude) => 1 / (magnitude / median + STAGNANT_SHARE),
     );
     if (worst === null) return;
-    const name = network.reachName(worst.reach);
+    const name = reachName(network, worst.reach);
     const share = worst.fault / median;
     const flowText = share < NO_FLOW_SHARE ? 'practically nothing' : show.text('flow', worst.fault);
     findings.push(
@@ -74,7 +75,7 @@ const NO_FLOW_SHARE = 1e-9;
  * 1 for each reach from which every way on ends dead: nodes that are no driving port and have one reach left are taken
  * off, with that reach, until there are none.
  */
-function onTheWayToADeadEnd({ network, chip }: FindingContext): Uint8Array {
+function onTheWayToADeadEnd({ network, run }: FindingContext): Uint8Array {
   const { nodeCount, reachCount, reachFrom, reachTo, nodePort } = network;
   const first = new Int32Array(nodeCount + 1);
   for (let r = 0; r < reachCount; r++) {
@@ -94,7 +95,7 @@ function onTheWayToADeadEnd({ network, chip }: FindingContext): Uint8Array {
   const isLeaf = (node: number): boolean => {
     if (left[node] !== 1) return false;
     if (nodePort[node] < 0) return true;
-    const { kind } = chip.ports[nodePort[node]].condition;
+    const { kind } = run.ports[nodePort[node]].condition;
     return kind === 'sealed' || kind === 'unset';
   };
   const leaves: number[] = [];
@@ -124,7 +125,7 @@ const NO_DIRECTION_SHARE = 1e-9;
 
 /** One finding per port that flows against what it is for. */
 function backflow(context: FindingContext): RuleOutcome {
-  const { flow, chip } = context;
+  const { flow, chip, run } = context;
   if (flow === null) return notRun('backflow', 'nothing was solved');
   const wants = expectations(context);
   if (wants.every((want) => want === null)) {
@@ -138,8 +139,9 @@ function backflow(context: FindingContext): RuleOutcome {
   for (const value of flow.portFlow) if (Math.abs(value) > largest) largest = Math.abs(value);
   const show = showFor(context);
   const findings: Finding[] = [];
-  chip.ports.forEach(({ name, xMm, yMm, condition, expect }, p) => {
+  chip.ports.forEach(({ name, xMm, yMm }, p) => {
     if (!isAsked(p)) return;
+    const { condition, expect } = run.ports[p];
     const into = flow.portFlow[p];
     const against = wants[p] === 'in' ? -into : into;
     if (!(against > NO_DIRECTION_SHARE * largest)) return;
@@ -166,16 +168,16 @@ function backflow(context: FindingContext): RuleOutcome {
 }
 
 /** What each port is for: as the run sheet says; else an open well is an outlet, unless the chip is only sucked at. */
-function expectations({ chip, flow }: FindingContext): readonly ('in' | 'out' | null)[] {
+function expectations({ run, flow }: FindingContext): readonly ('in' | 'out' | null)[] {
   let driving = 0;
   let sucking = 0;
-  chip.ports.forEach(({ condition: { kind } }, p) => {
+  run.ports.forEach(({ condition: { kind } }, p) => {
     if (kind !== 'pressure' && kind !== 'head' && kind !== 'flow') return;
     driving++;
     if (flow !== null && flow.portFlow[p] <= 0) sucking++;
   });
   const isSuckedOnly = sucking === driving;
-  return chip.ports.map(({ expect, condition }) => {
+  return run.ports.map(({ expect, condition }) => {
     if (expect !== null) return expect;
     return condition.kind === 'open' && !isSuckedOnly ? 'out' : null;
   });

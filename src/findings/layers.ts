@@ -11,7 +11,7 @@ export const layerRules: readonly Rule[] = [
 ];
 
 /** One finding per pair of layers of which the run sheet says for neither in which plane it lies. */
-function layersCross({ chip, network }: FindingContext): Finding[] {
+function layersCross({ chip, network, run }: FindingContext): Finding[] {
   if (chip.layers.length < 2) return [];
   const { near } = network.trace;
   const byPair = new Map<string, LayerCrossing[]>();
@@ -30,7 +30,7 @@ function layersCross({ chip, network }: FindingContext): Finding[] {
 
   function isPlaced(layer: number): boolean {
     const key = layerKey(chip.layers[layer].name);
-    return Object.entries(chip.sheet?.layers ?? {}).some(
+    return Object.entries(run.sheet?.layers ?? {}).some(
       ([name, entry]) => layerKey(name) === key && entry.kind === 'etched' && entry.plane !== null,
     );
   }

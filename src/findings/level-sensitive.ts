@@ -1,3 +1,4 @@
+import { reachName } from '../network/names.ts';
 /**
  * How far a small change of liquid level moves the flows that have a window. A port's level h stands for ρ g h, and flows are linear in pressures, so the change
  * is exact: of all windowed flows by one solve per port with a level, or of one flow by all ports by one adjoint solve, whichever are fewer.
@@ -27,15 +28,15 @@ interface Move {
 }
 
 function levelSensitive(context: FindingContext): RuleOutcome {
-  const { chip, network, flow } = context;
+  const { chip, run, network, flow } = context;
   if (flow === null) return notRun('level-sensitive', 'nothing was solved');
-  const windowed = chip.channels.map(
-    ({ settings }) =>
+  const windowed = run.channels.map(
+    (settings) =>
       settings !== null &&
       [settings.flow, settings.wallShear, settings.residenceTime].some((window) => window !== null),
   );
   if (!windowed.includes(true)) return notRun('level-sensitive', 'no channel is given a window');
-  const levels = chip.ports.flatMap(({ condition }, port) =>
+  const levels = run.ports.flatMap(({ condition }, port) =>
     condition.kind === 'head' || condition.kind === 'open' ? [port] : [],
   );
   if (levels.length === 0) return found([]);
@@ -59,8 +60,9 @@ function levelSensitive(context: FindingContext): RuleOutcome {
       );
       if (worst === null) return [];
       const { port, changeM3s, flowM3s } = worst.fault;
-      const name = network.reachName(worst.reach);
-      const { name: portName, condition } = chip.ports[port];
+      const name = reachName(network, worst.reach);
+      const { name: portName } = chip.ports[port];
+      const { condition } = run.ports[port];
       const level = `${formatNumber(LEVEL_CHANGE_M * 1e3)} mm of liquid level at ${portName} (${condition.kind})`;
       const share = flowM3s === 0 ? null : changeM3s / flowM3s;
       const moved =
@@ -92,13 +94,13 @@ function levelText(share: number | null): string {
 
 /** By reach: the port whose level moves it most, of equals the first drawn. */
 function largestMoves(
-  { chip, network }: FindingContext,
+  { network, run }: FindingContext,
   levels: readonly number[],
   watched: readonly number[],
 ): ReadonlyMap<number, Move> {
-  const pressurePa = chip.fluid.densityKgM3 * GRAVITY_M_S2 * LEVEL_CHANGE_M;
-  const prepared = prepareFlow(network);
-  const drives = drivesOf(chip);
+  const pressurePa = run.fluid.densityKgM3 * GRAVITY_M_S2 * LEVEL_CHANGE_M;
+  const prepared = prepareFlow(network, run);
+  const drives = drivesOf(run);
   const factor = factorFlow(prepared, kindsOf(drives));
   const moves = new Map<number, Move>();
   const see = (reach: number, port: number, change: number): void => {

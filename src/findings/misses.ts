@@ -1,3 +1,4 @@
+import { minWallMm } from '../chip/limits.ts';
 import { distanceToSegment } from '../geometry/segment.ts';
 import type { Network } from '../network/types.ts';
 import { closestPoints, nearer } from './closest.ts';
@@ -116,9 +117,8 @@ function findMiss(context: FindingContext, tip: Tip): NearMiss | null {
   const own = new Set(places.map(({ piece }) => piece));
   const channel = chip.channels[pieces.channel[place.piece]];
   const half = pieces.half[place.piece];
-  const minWall = chip.limits.minWallM(Number.isNaN(channel.depthMm) ? 0 : channel.depthMm / 1e3);
-  const minWallMm = minWall === null ? 0 : minWall.value * 1e3;
-  const limitMm = Math.max(minWallMm, Math.min(2 * half, MOST_WIDTH_MM));
+  const wallMm = minWallMm(chip, channel.depthMm)?.value ?? 0;
+  const limitMm = Math.max(wallMm, Math.min(2 * half, MOST_WIDTH_MM));
   // Of strokes that come from one side the widest paints the tip; those of a fan each paint their part.
   const painted = (tip.kind === 'end' ? [end] : tip.ends).map((member) => paintedEndOf(network, member));
   let best: NearMiss | null = null;
@@ -143,7 +143,7 @@ function findMiss(context: FindingContext, tip: Tip): NearMiss | null {
     const t = pieces.start[i] + Math.hypot(onLine.x2 - pieces.x1[i], onLine.y2 - pieces.y1[i]);
     const target = aim.distanceMm > 1e-9 ? { x: aim.x1, y: aim.y1 } : { x: onLine.x2, y: onLine.y2 };
     const pointsAtIt = pointsAt(target.x, target.y);
-    const apartMm = 4 * (half + pieces.half[i] + minWallMm);
+    const apartMm = 4 * (half + pieces.half[i] + wallMm);
     const isNear = (): boolean => isNearAlong(context, c, place.s, pieces.centreline[i], t, apartMm);
     if (!mayMiss(pointsAtIt, isNear)) continue;
     // Where there is no gap and a join is near, fluid passes: whether the right way is the etched area's affair.
@@ -168,7 +168,7 @@ function findMiss(context: FindingContext, tip: Tip): NearMiss | null {
     const gap = painted.map((face) => gapOfEndToHole(face, port)).reduce(nearer);
     if (!isBelow(gap.distanceMm, limitMm)) continue;
     const pointsAtIt = pointsAt(port.xMm, port.yMm);
-    if (!mayMiss(pointsAtIt, () => isNearPort(context, c, place.s, p, 4 * (2 * half + minWallMm)))) continue;
+    if (!mayMiss(pointsAtIt, () => isNearPort(context, c, place.s, p, 4 * (2 * half + wallMm)))) continue;
     if (tip.kind === 'fan' && !recedesFrom((x, y) => Math.hypot(x - port.xMm, y - port.yMm))) continue;
     consider({
       tip,

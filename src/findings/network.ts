@@ -1,4 +1,4 @@
-import type { Chip } from '../chip/types.ts';
+import type { Run } from '../chip/types.ts';
 import type { FlowPart, FlowState } from '../solve/types.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 import { deadPorts, gapOfDeadPart, gapText } from './dead-ports.ts';
@@ -19,31 +19,31 @@ export const networkRules: readonly Rule[] = [
 function ifAnyPortIsSet(
   context: FindingContext,
   rule: string,
-  run: (context: FindingContext, flow: FlowState) => Finding[],
+  look: (context: FindingContext, flow: FlowState) => Finding[],
 ): RuleOutcome {
-  const { chip, flow } = context;
+  const { run, flow } = context;
   if (flow === null) return notRun(rule, 'nothing was solved');
-  if (chip.ports.length > 0 && chip.ports.every(({ condition }) => condition.kind === 'unset')) {
+  if (run.ports.length > 0 && run.ports.every(({ condition }) => condition.kind === 'unset')) {
     return notRun(rule, 'no port has a condition yet');
   }
-  return found(run(context, flow));
+  return found(look(context, flow));
 }
 
 /** One finding per connected part that no port with pressure, flow, head or open belongs to. */
 function strayChannels(context: FindingContext, flow: FlowState): Finding[] {
-  const { chip, network } = context;
+  const { chip, run, network } = context;
   const reachesByPart = partReaches(context);
   const onOutlines = partsOnOutlines(context);
   return flow.parts.flatMap((part, p) => {
     const reaches = reachesByPart[p] ?? [];
-    if (onOutlines.has(p) || reaches.length === 0 || part.ports.some((port) => drives(chip, port))) return [];
+    if (onOutlines.has(p) || reaches.length === 0 || part.ports.some((port) => drives(run, port))) return [];
     const channels = [...new Set(reaches.map((reach) => chip.channels[network.reachChannel[reach]].name))];
     const ports = part.ports.map((port) => chip.ports[port].name);
     const verb = channels.length === 1 ? 'is' : 'are';
     const meets =
       ports.length === 0
         ? 'connected to no port'
-        : `connected to no port that drives it, only to ${listText(ports.map((name, i) => `${name} (${chip.ports[part.ports[i]].condition.kind})`))}`;
+        : `connected to no port that drives it, only to ${listText(ports.map((name, i) => `${name} (${run.ports[part.ports[i]].condition.kind})`))}`;
     return [
       toFinding('stray-channel', 'blocker', {
         message: `${listText(channels)} ${verb} ${meets}: nothing known flows there`,
@@ -80,12 +80,12 @@ function noReferences(context: FindingContext, flow: FlowState): Finding[] {
 }
 
 function noReference(context: FindingContext, part: FlowPart, number: number): Finding {
-  const { chip } = context;
+  const { chip, run } = context;
   const show = showFor(context);
-  const driven = part.ports.filter((port) => drives(chip, port));
+  const driven = part.ports.filter((port) => drives(run, port));
   const given = driven.map((port) => portText(context, port));
-  const idle = part.ports.find((port) => !drives(chip, port));
-  const outlet = driven.reduce((least, port) => (flowOf(chip, port) < flowOf(chip, least) ? port : least));
+  const idle = part.ports.find((port) => !drives(run, port));
+  const outlet = driven.reduce((least, port) => (flowOf(run, port) < flowOf(run, least) ? port : least));
   const well = chip.ports[idle ?? outlet].name;
   const first = chip.ports[driven[0]];
   const cutOff = cutOffFix(context, number);
@@ -120,10 +120,10 @@ function cutOffFix(context: FindingContext, part: number): string | null {
 
 /** Wells that open into each other are one node, which can hold one pressure only. */
 function conflict(context: FindingContext, part: FlowPart): Finding {
-  const { chip, network } = context;
+  const { chip, run, network } = context;
   const byNode = new Map<number, number[]>();
   for (const port of part.ports) {
-    const { kind } = chip.ports[port].condition;
+    const { kind } = run.ports[port].condition;
     if (kind !== 'pressure' && kind !== 'head' && kind !== 'open') continue;
     const node = network.portNode[port];
     byNode.set(node, [...(byNode.get(node) ?? []), port]);
@@ -142,12 +142,12 @@ function conflict(context: FindingContext, part: FlowPart): Finding {
   });
 }
 
-function flowOf({ ports }: Chip, port: number): number {
+function flowOf({ ports }: Run, port: number): number {
   const { condition } = ports[port];
   return condition.kind === 'flow' ? condition.flowM3s : 0;
 }
 
-function drives({ ports }: Chip, port: number): boolean {
+function drives({ ports }: Run, port: number): boolean {
   const { kind } = ports[port].condition;
   return kind !== 'sealed' && kind !== 'unset';
 }

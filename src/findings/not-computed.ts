@@ -1,5 +1,5 @@
 import { DEFAULT_JOINTS } from '../chip/defaults.ts';
-import type { Chip } from '../chip/types.ts';
+import type { Run } from '../chip/types.ts';
 import type { RunSheet } from '../runsheet/types.ts';
 import { found, type Rule, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
@@ -7,7 +7,7 @@ import { listText } from './words.ts';
 
 /** What the run sheet asks for and this program does not compute yet: each is held, so that nobody takes silence for an answer. */
 export const notComputedRules: readonly Rule[] = [
-  { names: ['not-computed'], run: ({ chip }) => found(notComputed(chip)) },
+  { names: ['not-computed'], run: ({ run }) => found(notComputed(run)) },
 ];
 
 /** One part of the run sheet that waits for its computation. */
@@ -22,7 +22,7 @@ interface Waiting {
   readonly key: string;
 }
 
-function notComputed({ sheet }: Pick<Chip, 'sheet'>): Finding[] {
+function notComputed({ sheet }: Pick<Run, 'sheet'>): Finding[] {
   if (sheet === null) return [];
   return waitingParts(sheet).map(({ names, what, instead, key }) =>
     toFinding('not-computed', 'blocker', {

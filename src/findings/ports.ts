@@ -18,7 +18,7 @@ export const portRules: readonly Rule[] = [
   limitRule(
     'port-crowding',
     'port_gap',
-    ({ chip }) => chip.limits.portGapM,
+    ({ run }) => run.limits.portGapM,
     ({ chip }, limit) => {
       const limitMm = limit.value * 1e3;
       return closePorts(chip.ports, limitMm).map(([p, q, gapMm]) => {
@@ -44,7 +44,7 @@ export const portRules: readonly Rule[] = [
       });
     },
   ),
-  limitRule('port-grid', 'port_grid', ({ chip }) => chip.limits.portGridM, portGridFaults),
+  limitRule('port-grid', 'port_grid', ({ run }) => run.limits.portGridM, portGridFaults),
 ];
 
 /** Centrelines and channels that come to each port. */

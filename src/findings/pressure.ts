@@ -1,3 +1,4 @@
+import { nodeName } from '../network/names.ts';
 import type { FindingContext } from './context.ts';
 import { found, isAbove, isBelow, type Rule, type RuleOutcome, toFinding, withoutLimit } from './rule.ts';
 import type { Finding, NotRun } from './types.ts';
@@ -13,7 +14,7 @@ export const pressureRules: readonly Rule[] = [
 export const NEAR_VACUUM_PA = -95e3;
 
 function overPressure(context: FindingContext): RuleOutcome {
-  const limit = context.chip.limits.maxPressurePa;
+  const limit = context.run.limits.maxPressurePa;
   if (limit === null) return withoutLimit('over-pressure', 'max_pressure', context);
   const show = showFor(context);
   return judge(context, 'over-pressure', 1, (highest, names) => {
@@ -29,7 +30,7 @@ function overPressure(context: FindingContext): RuleOutcome {
 }
 
 function underPressure(context: FindingContext): RuleOutcome {
-  const limit = context.chip.limits.minPressurePa;
+  const limit = context.run.limits.minPressurePa;
   const show = showFor(context);
   const outcome = judge(context, 'under-pressure', -1, (lowest, names) => {
     const { pressurePa, where, isSupply, at } = lowest;
@@ -80,7 +81,7 @@ function judge(
   sense: 1 | -1,
   look: (extreme: Extreme, names: readonly string[]) => Finding | null,
 ): RuleOutcome {
-  const { network, flow, chip } = context;
+  const { network, flow, chip, run } = context;
   if (flow === null) return { findings: [], notRun: [{ rule, why: 'nothing was solved' }] };
   const worst = new Map<number, Extreme>();
   const candidates = new Map<number, Extreme[]>();
@@ -90,13 +91,13 @@ function judge(
     if (before === undefined || sense * (extreme.pressurePa - before.pressurePa) > 0)
       worst.set(part, extreme);
   };
-  chip.ports.forEach(({ name, xMm, yMm, tubing }, p) => {
+  chip.ports.forEach(({ name, xMm, yMm }, p) => {
     const node = network.portNode[p];
     const inChip = flow.portPressure[p];
     const atSupply = flow.supplyPressure[p];
     if (Number.isNaN(inChip)) return;
     known++;
-    const isSupplyWorse = tubing.length > 0 && sense * (atSupply - inChip) > 0;
+    const isSupplyWorse = run.ports[p].tubing.length > 0 && sense * (atSupply - inChip) > 0;
     const extreme = {
       pressurePa: isSupplyWorse ? atSupply : inChip,
       where: isSupplyWorse ? `the supply of ${name}` : `port ${name}`,
@@ -121,7 +122,7 @@ function judge(
       continue;
     const xMm = network.nodeX[node];
     const yMm = network.nodeY[node];
-    const name = network.nodeName(node);
+    const name = nodeName(network, node);
     worst.set(part, {
       pressurePa,
       where: `node ${name} at ${placeText(xMm, yMm)}`,

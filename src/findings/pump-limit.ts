@@ -1,7 +1,7 @@
 import { foundPumpLimits, givenPumpLimits, type PumpLimits } from '../chip/pump-limits.ts';
 import type { Sourced } from '../chip/types.ts';
 import type { Show } from '../runsheet/shown.ts';
-import type { FoundSettings, FoundTarget } from '../solve/targets.ts';
+import type { FoundTarget } from '../solve/targets.ts';
 import { lineAt } from '../solve/targets-limits.ts';
 import { targetValue } from '../solve/targets-wanted.ts';
 import type { FindingContext } from './context.ts';
@@ -9,23 +9,18 @@ import { isAbove, isBelow, notRun, type Rule, type RuleOutcome, toFinding } from
 import type { Finding } from './types.ts';
 import { limitText, listText, showFor } from './words.ts';
 
-/** Can the pumps do what the ports ask of them: at the conditions of the run sheet. */
-export const pumpRules: readonly Rule[] = [pumpLimitRule(null)];
-
 /**
- * The same at found settings, where the finding also says what the nearest setting within reach does to the target, and where what
- * no pump usually does is a caution although the run sheet gives no limit.
+ * Can the pumps do what the ports ask of them? At found settings the finding also says what the nearest setting within reach does
+ * to the target, and what no pump usually does is a caution although the run sheet gives no limit.
  */
-export function pumpLimitRule(settings: FoundSettings | null): Rule {
-  return { names: ['pump-limit'], run: (context) => pumpLimit(context, settings) };
-}
+export const pumpRules: readonly Rule[] = [{ names: ['pump-limit'], run: pumpLimit }];
 
-function pumpLimit(context: FindingContext, settings: FoundSettings | null): RuleOutcome {
-  const { chip, flow } = context;
+function pumpLimit(context: FindingContext): RuleOutcome {
+  const { chip, run, flow, found: settings } = context;
   const ports = chip.ports.flatMap((port, p): Limited[] => {
     const target = settings?.targets.find(({ wanted }) => wanted.port === p) ?? null;
     const limits =
-      target === null ? givenPumpLimits(chip, port.drawnName) : foundPumpLimits(chip, port.drawnName);
+      target === null ? givenPumpLimits(run, port.drawnName) : foundPumpLimits(run, port.drawnName);
     return limits === null ? [] : [{ port: p, limits, target }];
   });
   if (ports.length === 0) return notRun('pump-limit', 'no pump_limits are given');

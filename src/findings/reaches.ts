@@ -1,3 +1,4 @@
+import { reachName } from '../network/names.ts';
 import type { Network } from '../network/types.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 
@@ -60,8 +61,8 @@ const SAME = 1e-9;
 /** The worst reach first, then the channel, then the other reaches at fault. */
 export function reachNames({ network, chip }: FindingContext, { reach, faulty }: Worst<unknown>): string[] {
   const channel = chip.channels[network.reachChannel[reach]].name;
-  const others = faulty.filter((other) => other !== reach).map(network.reachName);
-  return [...new Set([network.reachName(reach), channel, ...others])];
+  const others = faulty.filter((other) => other !== reach).map((r) => reachName(network, r));
+  return [...new Set([reachName(network, reach), channel, ...others])];
 }
 
 /** " (and in 3 more reaches of lane)" for a message, nothing when there are none. */

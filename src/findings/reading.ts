@@ -92,9 +92,9 @@ function disguisedStroke({ channel, by, xMm, yMm }: FaultOf<'disguised-stroke'>)
   });
 }
 
-function unsetPorts({ chip }: FindingContext): Finding[] {
+function unsetPorts({ chip, run }: FindingContext): Finding[] {
   return chip.ports
-    .filter(({ condition }) => condition.kind === 'unset')
+    .filter((_, p) => run.ports[p].condition.kind === 'unset')
     .map(({ name, drawnName, xMm, yMm, radiusMm }) =>
       toFinding('unset-port', 'blocker', {
         message: `port ${name} (${distanceText(2 * radiusMm)} hole) has no condition; it was computed as sealed`,

@@ -1,3 +1,4 @@
+import { nodeName, reachName } from '../network/names.ts';
 import { NODE_KINDS } from '../network/types.ts';
 import { CURVED_FLOW_DEAN, deanNumber } from '../physics/dean.ts';
 import { entranceLength, spreadingLength } from '../physics/entrance.ts';
@@ -33,8 +34,8 @@ function ifFlowIsKnown(
 
 /** One finding per channel, at its fastest reach. */
 function notLaminar(context: FindingContext): Finding[] {
-  const { chip, network } = context;
-  const limit = chip.limits.maxReynolds;
+  const { chip, run, network } = context;
+  const limit = run.limits.maxReynolds;
   const show = showFor(context);
   return chip.channels.flatMap((_, c) => {
     const worst = worstReach(
@@ -47,7 +48,7 @@ function notLaminar(context: FindingContext): Finding[] {
     );
     if (worst === null) return [];
     const { reynolds, flowM3s } = worst.fault;
-    const name = network.reachName(worst.reach);
+    const name = reachName(network, worst.reach);
     return [
       toFinding('not-laminar', 'blocker', {
         message: `the Reynolds number in ${name} is ${formatNumber(reynolds)}; the flow counts as laminar up to ${limitText(formatNumber(limit.value), limit)}${othersText(context, worst)}`,
@@ -92,12 +93,12 @@ function developingFlow(context: FindingContext): Finding[] {
     if (worst === null) return [];
     const { developingM, limitM, hydraulicDiameterM, opening, isReversed } = worst.fault;
     const show = showFor(context);
-    const name = network.reachName(worst.reach);
-    const start = network.nodeName((isReversed ? network.reachTo : network.reachFrom)[worst.reach]);
+    const name = reachName(network, worst.reach);
+    const start = nodeName(network, (isReversed ? network.reachTo : network.reachFrom)[worst.reach]);
     const cause =
       opening === null
         ? `the flow that enters ${name} at ${start} needs ${show.text('length', developingM)} to develop`
-        : `${network.reachName(opening.feeder)} opens into ${name} ${opening.side === 'axis' ? 'on its axis' : 'off its axis'} at ${start}, and its flow needs ${show.text('length', developingM)} to spread`;
+        : `${reachName(network, opening.feeder)} opens into ${name} ${opening.side === 'axis' ? 'on its axis' : 'off its axis'} at ${start}, and its flow needs ${show.text('length', developingM)} to spread`;
     const remedy =
       opening !== null
         ? ', lead the flow in through a taper or several feeders'
@@ -150,20 +151,20 @@ function placeMm(
 
 /** From where to where a window on the reach holds, in the direction of the flow. */
 function holdsText(context: FindingContext, reach: number, developing: Developing): string {
-  const { network, chip } = context;
+  const { network, run } = context;
   const { lengthM, developingM, gatheringM, isReversed } = developing;
   const show = showFor(context);
   const [from, to] = isReversed
     ? [network.reachTo[reach], network.reachFrom[reach]]
     : [network.reachFrom[reach], network.reachTo[reach]];
-  const { settings } = chip.channels[network.reachChannel[reach]];
+  const settings = run.channels[network.reachChannel[reach]];
   const what = settings?.wallShear ? 'its wall shear window holds' : 'the computed wall shear holds';
   if (developingM + gatheringM >= lengthM) return `${what} nowhere in it`;
   const until =
     gatheringM === 0
-      ? network.nodeName(to)
-      : `${show.text('length', gatheringM)} before ${network.nodeName(to)}`;
-  return `${what} only from ${show.text('length', developingM)} after ${network.nodeName(from)} to ${until}`;
+      ? nodeName(network, to)
+      : `${show.text('length', gatheringM)} before ${nodeName(network, to)}`;
+  return `${what} only from ${show.text('length', developingM)} after ${nodeName(network, from)} to ${until}`;
 }
 
 /* ---------- curvature ---------- */
@@ -185,7 +186,7 @@ function curvedFlow(context: FindingContext): Finding[] {
     );
     if (worst === null) return [];
     const { dean, radiusMm, xMm, yMm } = worst.fault;
-    const name = network.reachName(worst.reach);
+    const name = reachName(network, worst.reach);
     const show = showFor(context);
     return [
       toFinding('curved-flow', 'note', {
@@ -250,7 +251,7 @@ function shortReach(context: FindingContext): Finding[] {
     const { ratio, joints, lengthMm } = worst.fault;
     const isLeftOut = chip.joints === 'centreline' && isBelow(ratio, WIDTHS_PER_JOINT_LEFT_OUT);
     const limit = isLeftOut ? WIDTHS_PER_JOINT_LEFT_OUT : WIDTHS_PER_JOINT;
-    const name = network.reachName(worst.reach);
+    const name = reachName(network, worst.reach);
     const show = showFor(context);
     const model =
       chip.joints === 'centreline'

@@ -1,4 +1,5 @@
 import type { Channel } from '../chip/types.ts';
+import { reachName } from '../network/names.ts';
 import { meanRoofRise, risenResistanceFactor } from '../physics/roof.ts';
 import { formatNumber, formatShare } from '../runsheet/shown.ts';
 import { acrossMark, middleOfChannel } from './centrelines.ts';
@@ -34,7 +35,7 @@ export const sectionRules: readonly Rule[] = [
   limitRule(
     'narrow-channel',
     'min_width',
-    ({ chip }) => chip.limits.minWidthM,
+    ({ run }) => run.limits.minWidthM,
     ({ chip }, limit) =>
       perChannel(chip.channels, (channel) => {
         const { name, drawnWidthMm } = channel;
@@ -55,7 +56,7 @@ export const sectionRules: readonly Rule[] = [
   limitRule(
     'roof-span',
     'max_width_to_depth',
-    ({ chip }) => chip.limits.maxWidthToDepth,
+    ({ run }) => run.limits.maxWidthToDepth,
     ({ chip }, limit) =>
       perChannel(chip.channels, (channel, c) => {
         const { name, ductWidthMm, depthMm } = channel;
@@ -87,7 +88,7 @@ export const sectionRules: readonly Rule[] = [
   limitRule(
     'tall-wall',
     'max_depth_to_width',
-    ({ chip }) => chip.limits.maxDepthToWidth,
+    ({ run }) => run.limits.maxDepthToWidth,
     ({ chip }, limit) =>
       perChannel(chip.channels, (channel) => {
         const { name, ductWidthMm, depthMm } = channel;
@@ -129,8 +130,8 @@ const LEAST_WIDTH_MM = 0.005;
 
 /** One finding per channel, at the reach whose roof moves most. */
 function softWalls(context: FindingContext): RuleOutcome {
-  const { chip, network, flow } = context;
-  const stiffness = chip.limits.stiffnessPa;
+  const { chip, run, network, flow } = context;
+  const stiffness = run.limits.stiffnessPa;
   if (stiffness === null) return withoutLimit('soft-walls', 'stiffness', context);
   const show = showFor(context);
   let unknown = 0;
@@ -153,7 +154,7 @@ function softWalls(context: FindingContext): RuleOutcome {
     );
     if (worst === null) return null;
     const { pressurePa, riseM, share } = worst.fault;
-    const name = network.reachName(worst.reach);
+    const name = reachName(network, worst.reach);
     const factor = risenResistanceFactor(depthM, riseM);
     const effect =
       factor === Infinity
@@ -161,7 +162,7 @@ function softWalls(context: FindingContext): RuleOutcome {
         : `the resistance is about ${formatNumber(Math.abs(factor - 1) * 100, 2)} % ${riseM > 0 ? 'lower' : 'higher'} than computed, and flow and wall shear are off with it`;
     const narrowMm = (channel.drawnWidthMm * RISE_SHARE) / share;
     const leastDepthM = Math.abs(riseM) / RISE_SHARE;
-    const { minWidthM, maxDepthToWidth } = chip.limits;
+    const { minWidthM, maxDepthToWidth } = run.limits;
     // Advice that another rule would hold, or that nobody could make, is none.
     const ways = [
       ...(narrowMm >= Math.max(LEAST_WIDTH_MM, 1e3 * (minWidthM?.value ?? 0))

@@ -1,4 +1,5 @@
 import type { Chip } from '../chip/types.ts';
+import { reachName } from '../network/names.ts';
 import { isPattern, matches } from '../runsheet/names.ts';
 import { formatNumber, formatShare } from '../runsheet/shown.ts';
 import { drivesOf } from '../solve/drives.ts';
@@ -27,8 +28,8 @@ const MOST_RATIOS = 5;
 
 /** One finding per entry with `even`, at the channel that lies farthest from the mean of all that match its name. */
 function unevenFlow(context: FindingContext): RuleOutcome {
-  const { chip, flow } = context;
-  const asked = Object.entries(chip.sheet?.channels ?? {}).flatMap(([key, { even }]) =>
+  const { chip, run, flow } = context;
+  const asked = Object.entries(run.sheet?.channels ?? {}).flatMap(([key, { even }]) =>
     even === null ? [] : [{ key, even }],
   );
   if (asked.length === 0) return notRun('uneven-flow', 'no channels are asked to be even');
@@ -110,7 +111,7 @@ function judge(
       withRatio && unlikeLanes(lanes, even).length === 0 ? timesToEven(context, even, lanes) : null,
     ),
     at: middleOfReach(network, worst.reach),
-    names: [...new Set([worst.name, network.reachName(worst.reach), ...outside.map(({ name }) => name)])],
+    names: [...new Set([worst.name, reachName(network, worst.reach), ...outside.map(({ name }) => name)])],
     measure: { value: offBy(worst), limit: even, unit: '' },
   });
 }
@@ -162,9 +163,9 @@ const RATIO_WITHIN = 1.01;
  * ratio is d (1 − e)/(e (1 − d)).
  */
 export function timesToEven(context: FindingContext, even: number, lanes: readonly Lane[]): number | null {
-  const { network, chip } = context;
-  const prepared = prepareFlow(network);
-  const drives = drivesOf(chip);
+  const { network, run } = context;
+  const prepared = prepareFlow(network, run);
+  const drives = drivesOf(run);
   const channels = new Set(lanes.map(({ reach }) => network.reachChannel[reach]));
   const isEvenAt = (times: number): boolean => {
     const reach = prepared.nominal.reach.map((resistance, r) =>

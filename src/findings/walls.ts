@@ -1,4 +1,5 @@
-import type { Channel, Chip, Sourced } from '../chip/types.ts';
+import { minWallMm } from '../chip/limits.ts';
+import type { Channel } from '../chip/types.ts';
 import { findNearPairs, type Nearness } from '../geometry/near.ts';
 import { closePorts } from './close-ports.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
@@ -254,12 +255,6 @@ function middleOf({ mark: [x1, y1, x2, y2] }: Pick<ThinWall, 'mark'>) {
 
 function markOf({ mark: [x1Mm, y1Mm, x2Mm, y2Mm] }: Pick<ThinWall, 'mark'>) {
   return { x1Mm, y1Mm, x2Mm, y2Mm };
-}
-
-/** A depth that is not known counts as none. */
-function minWallMm({ limits }: Chip, depthMm: number): Sourced<number> | null {
-  const limit = limits.minWallM(Number.isNaN(depthMm) ? 0 : depthMm / 1e3);
-  return limit === null ? null : { value: limit.value * 1e3, origin: limit.origin };
 }
 
 /** The deeper of two channels, mm; NaN only when neither depth is known. */

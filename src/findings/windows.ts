@@ -1,4 +1,5 @@
 import type { Channel } from '../chip/types.ts';
+import { reachName } from '../network/names.ts';
 import { floorShareInside, sideShareInside } from '../physics/duct.ts';
 import { formatNumber, formatShare, type Shown } from '../runsheet/shown.ts';
 import type { ChannelEntry, ShearWindow, Window } from '../runsheet/types.ts';
@@ -33,12 +34,12 @@ function windowRule<W extends Window>(
   return {
     names: [name],
     run: (context): RuleOutcome => {
-      const { chip } = context;
+      const { chip, run } = context;
       const findings: Finding[] = [];
       const unknown: string[] = [];
       let asked = 0;
       chip.channels.forEach((channel, c) => {
-        const { settings } = channel;
+        const settings = run.channels[c];
         const window = settings === null ? null : windowOf(settings);
         if (settings === null || window === null) return;
         asked++;
@@ -138,7 +139,7 @@ function shearFinding(
   const { network } = context;
   const show = showFor(context);
   const { value, wall } = worst.fault;
-  const name = network.reachName(worst.reach);
+  const name = reachName(network, worst.reach);
   const measure = side === 'below' ? 'mean' : 'peak';
   return toFinding('shear-window', 'blocker', {
     message: `the ${measure} wall shear on the ${wall} of ${name} is ${show.text('wall_shear', value)}, ${side} the ${side === 'below' ? 'least' : 'most'} of ${show.text('wall_shear', limit)}${othersText(context, worst)}`,
@@ -156,9 +157,9 @@ function shearFix(
   { reach, fault }: Worst<ShearFault>,
 ): string {
   const show = showFor(context);
-  const name = context.network.reachName(reach);
+  const name = reachName(context.network, reach);
   const { form, flowM3s } = fault.state;
-  const perFlow = context.chip.fluid.viscosityPaS * form.resistance;
+  const perFlow = context.run.fluid.viscosityPaS * form.resistance;
   const all = settings.walls === 'all';
   const meanPerFlow = perFlow * (all ? Math.min(form.floorMean, form.sideMean) : form.floorMean);
   const peakPerFlow = perFlow * (all ? Math.max(form.floorPeak, form.sidePeak) : form.floorPeak);
@@ -185,7 +186,7 @@ function shareFinding(
   const { network } = context;
   const show = showFor(context);
   const { value, wall, state } = worst.fault;
-  const name = network.reachName(worst.reach);
+  const name = reachName(network, worst.reach);
   const mean = meanShear(state, wall);
   const peak = peakShear(state, wall);
   const isLow = window.min !== null && mean < window.min;
@@ -284,7 +285,7 @@ function residenceFinding(
   const show = showFor(context);
   const [first] = worst.reaches;
   const channel = chip.channels[network.reachChannel[first]].name;
-  const name = worst.reaches.length === 1 ? network.reachName(first) : channel;
+  const name = worst.reaches.length === 1 ? reachName(network, first) : channel;
   const time = side === 'below' ? worst.fastestS : worst.meanS;
   const more = faults.length - 1;
   const others = more === 0 ? '' : ` (and in ${more} more ${more === 1 ? 'reach' : 'reaches'} of ${channel})`;
@@ -309,8 +310,8 @@ function residenceFinding(
       ...new Set([
         name,
         channel,
-        ...worst.reaches.map(network.reachName),
-        ...otherReaches.map(network.reachName),
+        ...worst.reaches.map((r) => reachName(network, r)),
+        ...otherReaches.map((r) => reachName(network, r)),
       ]),
     ],
     measure: { value: still ? null : time, limit, unit: 's' },
@@ -347,7 +348,7 @@ function flowFindings(context: FindingContext, { reaches, window }: Watched<Wind
   return findings;
 
   function flowFinding(worst: Worst<number>, side: 'below' | 'above', limit: number): Finding {
-    const name = network.reachName(worst.reach);
+    const name = reachName(network, worst.reach);
     const limitNow = show.text('flow', limit);
     const isLow = side === 'below';
     return toFinding('flow-window', 'blocker', {

@@ -3,8 +3,8 @@ import { formatMm, formatNumber, type Show, showOf } from '../runsheet/shown.ts'
 import { type FindingContext, oncePerContext } from './context.ts';
 
 /** Numbers for messages, in the units that the run sheet's `show` asks for. */
-export const showFor: (context: FindingContext) => Show = oncePerContext(({ chip }) =>
-  showOf(chip.sheet?.show ?? null),
+export const showFor: (context: FindingContext) => Show = oncePerContext(({ run }) =>
+  showOf(run.sheet?.show ?? null),
 );
 
 /** A distance across the drawing (mm) as people say it: "35 µm", "1.2 mm". */
@@ -89,7 +89,7 @@ export function portText(context: FindingContext, port: number): string {
 /** What the run sheet does to a port: "12 kPa", "40 mm of head", "open". */
 export function conditionText(context: FindingContext, port: number): string {
   const show = showFor(context);
-  const { condition } = context.chip.ports[port];
+  const { condition } = context.run.ports[port];
   switch (condition.kind) {
     case 'flow':
       return show.text('flow', condition.flowM3s);

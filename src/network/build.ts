@@ -1,3 +1,4 @@
+import { minWallM } from '../chip/limits.ts';
 import type { Chip } from '../chip/types.ts';
 import { toArcs } from './arcs.ts';
 import { type Draft, Marks, NodeUnion, toEnds } from './draft.ts';
@@ -6,7 +7,6 @@ import { joinEnds } from './ends.ts';
 import { JointTally } from './joint-types.ts';
 import { stopsByNode } from './kept.ts';
 import { markMeetings } from './meetings.ts';
-import { nameNodes, nameReach, nameSegment } from './names.ts';
 import { findNearPieces } from './near-pieces.ts';
 import { classifyNodes } from './node-joints.ts';
 import { type Nodes, toNodes } from './nodes.ts';
@@ -64,7 +64,7 @@ function nearnessMm(chip: Chip): number {
   let wall = 0;
   const add = (depthM: number): void => {
     const known = Number.isNaN(depthM) ? 0 : depthM;
-    wall = Math.max(wall, (chip.limits.minWallM(known)?.value ?? 0) * 1e3);
+    wall = Math.max(wall, (minWallM(chip, known)?.value ?? 0) * 1e3);
     if (chip.process === 'cast elastomer') wall = Math.max(wall, known * 500);
   };
   for (const layer of chip.layers) add(layer.depthM);
@@ -85,13 +85,11 @@ function toNetwork(
 ): Network {
   const { ofRoot, rootOf, ...nodeColumns } = nodes;
   const { rootFrom, rootTo, resolvedMm, arcReach, arcReversed, ...reachColumns } = reaches;
-  const { reachCount, reachChannel, reachCentrelineMm, firstSegment, segmentReach } = reaches;
+  const { reachCount, reachChannel, reachCentrelineMm } = reaches;
   const reachNumber = new Int32Array(reachCount);
   const channelReachCount = new Int32Array(chip.channels.length);
   for (let r = 0; r < reachCount; r++) reachNumber[r] = ++channelReachCount[reachChannel[r]];
   const ductMm = chip.joints === 'resolved' ? resolvedMm : reachCentrelineMm;
-  const names = nameNodes(chip, nodes.nodeKind, nodes.nodePort);
-  const nameColumns = { reachChannel, reachNumber, channelReachCount };
   return {
     chip,
     ...nodeColumns,
@@ -102,8 +100,5 @@ function toNetwork(
     ...joints,
     joints: tally.summaries(),
     trace,
-    nodeName: names,
-    reachName: (reach) => nameReach(chip, nameColumns, reach),
-    segmentName: (segment) => nameSegment(chip, nameColumns, firstSegment, segmentReach, segment),
   };
 }

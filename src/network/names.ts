@@ -1,45 +1,40 @@
-import type { Chip } from '../chip/types.ts';
-import { NODE_KINDS } from './types.ts';
+import { type Network, NODE_KINDS, type NodeKind } from './types.ts';
 
-const NODE_LETTER: Readonly<Record<(typeof NODE_KINDS)[number], string>> = {
-  port: 'P',
-  junction: 'J',
-  end: 'E',
-  step: 'S',
-};
+const NODE_LETTER: Readonly<Record<NodeKind, string>> = { port: 'P', junction: 'J', end: 'E', step: 'S' };
 
-/** Names of nodes: a port's own name; else J1, J2 … for junctions, E1 … for ends, S1 … for steps, in drawn order. */
-export function nameNodes(chip: Chip, nodeKind: Uint8Array, nodePort: Int32Array): (node: number) => string {
-  const number = new Int32Array(nodeKind.length);
+/** 1-based number of each node among those of its kind. */
+export function numberOfKind(nodeKind: Uint8Array): Int32Array {
   const seen = new Int32Array(NODE_KINDS.length);
-  for (let node = 0; node < nodeKind.length; node++) number[node] = ++seen[nodeKind[node]];
-  return (node) =>
-    nodePort[node] >= 0
-      ? chip.ports[nodePort[node]].name
-      : `${NODE_LETTER[NODE_KINDS[nodeKind[node]]]}${number[node]}`;
+  return Int32Array.from(nodeKind, (kind) => ++seen[kind]);
 }
 
-interface ReachColumns {
-  readonly reachChannel: Int32Array;
-  readonly reachNumber: Int32Array;
-  readonly channelReachCount: Int32Array;
-}
-
-/** The channel's name; with more than one reach, counted in drawn order: `feed:1`, `feed:2`. */
-export function nameReach(chip: Chip, columns: ReachColumns, reach: number): string {
-  const channel = columns.reachChannel[reach];
-  const { name } = chip.channels[channel];
-  return columns.channelReachCount[channel] > 1 ? `${name}:${columns.reachNumber[reach]}` : name;
-}
-
-/** The reach's name and the segment's number in it from → to: `feed:2/3`. */
-export function nameSegment(
-  chip: Chip,
-  columns: ReachColumns,
-  firstSegment: Int32Array,
-  segmentReach: ArrayLike<number>,
-  segment: number,
+/** Name of a node: a port's own name; else J1, J2 … for junctions, E1 … for ends, S1 … for steps, in drawn order. */
+export function nodeName(
+  { chip, nodeKind, nodePort, nodeNumber }: Pick<Network, 'chip' | 'nodeKind' | 'nodePort' | 'nodeNumber'>,
+  node: number,
 ): string {
-  const reach = segmentReach[segment];
-  return `${nameReach(chip, columns, reach)}/${segment - firstSegment[reach] + 1}`;
+  return nodePort[node] >= 0
+    ? chip.ports[nodePort[node]].name
+    : `${NODE_LETTER[NODE_KINDS[nodeKind[node]]]}${nodeNumber[node]}`;
+}
+
+/** Name of a reach: its channel's; with more than one reach, counted in drawn order: `feed:1`, `feed:2`. */
+export function reachName(
+  {
+    chip,
+    reachChannel,
+    reachNumber,
+    channelReachCount,
+  }: Pick<Network, 'chip' | 'reachChannel' | 'reachNumber' | 'channelReachCount'>,
+  reach: number,
+): string {
+  const channel = reachChannel[reach];
+  const { name } = chip.channels[channel];
+  return channelReachCount[channel] > 1 ? `${name}:${reachNumber[reach]}` : name;
+}
+
+/** Name of a segment: its reach's, and its number in it from → to: `feed:2/3`. */
+export function segmentName(network: Network, segment: number): string {
+  const reach = network.segmentReach[segment];
+  return `${reachName(network, reach)}/${segment - network.firstSegment[reach] + 1}`;
 }

@@ -1,6 +1,7 @@
 import type { Arcs } from './arcs.ts';
 import { type Draft, pointAt } from './draft.ts';
 import { isEqualDuct } from './equal-ducts.ts';
+import { numberOfKind } from './names.ts';
 import type { Reaches } from './reaches.ts';
 import { type Network, NODE_KINDS, type NodeKind } from './types.ts';
 
@@ -8,7 +9,15 @@ import { type Network, NODE_KINDS, type NodeKind } from './types.ts';
 export interface Nodes
   extends Pick<
     Network,
-    'nodeCount' | 'nodeKind' | 'nodeX' | 'nodeY' | 'nodePort' | 'portNode' | 'reachFrom' | 'reachTo'
+    | 'nodeCount'
+    | 'nodeKind'
+    | 'nodeX'
+    | 'nodeY'
+    | 'nodePort'
+    | 'nodeNumber'
+    | 'portNode'
+    | 'reachFrom'
+    | 'reachTo'
   > {
   /** Node of each root of the draft; −1 where no reach and no port is. */
   readonly ofRoot: Int32Array;
@@ -44,6 +53,7 @@ export function toNodes(draft: Draft, arcs: Arcs, reaches: Reaches): Nodes {
     reachFrom,
     reachTo,
     nodeKind,
+    nodeNumber: numberOfKind(nodeKind),
     ofRoot,
     rootOf,
     ...placeNodes(draft, arcs, ofRoot, nodePort),

@@ -21,6 +21,8 @@ export interface Network {
   readonly nodeY: Float64Array;
   /** Index of the port whose well this node is, −1 for none. */
   readonly nodePort: Int32Array;
+  /** 1-based count of this node among those of its kind, in drawn order (for names). */
+  readonly nodeNumber: Int32Array;
   /** Node of each port, in the order of chip.ports; every port has one. */
   readonly portNode: Int32Array;
 
@@ -63,10 +65,6 @@ export interface Network {
 
   /** How the network came from the drawing: for findings that must point into it, and for joints. */
   readonly trace: NetworkTrace;
-
-  readonly nodeName: (node: number) => string;
-  readonly reachName: (reach: number) => string;
-  readonly segmentName: (segment: number) => string;
 }
 
 /** What became of one end of a centreline. */

@@ -1,3 +1,4 @@
+import { reachName } from '../network/names.ts';
 import { formatNumber, type Shown, type Unit } from '../runsheet/shown.ts';
 import { clippedLine } from './clipped-line.ts';
 import {
@@ -508,7 +509,7 @@ function reachText(
   { readable }: MapOptions,
 ): string {
   const value = values[reach];
-  const name = shortName(network.reachName(reach), readable);
+  const name = shortName(reachName(network, reach), readable);
   return Number.isNaN(value) ? name : `${name} ${formatNumber(value / unit.si)}`;
 }
 
@@ -537,13 +538,13 @@ function findingMarkers({ part }: ReportedCase, frame: Frame): { number: number;
 
 /** Reaches with a window first, then the longest. */
 function reachesToLabel(
-  { network }: ReportedCase,
+  { network, run }: ReportedCase,
   values: Float64Array,
 ): { chosen: readonly number[]; of: number } {
   const windowed: number[] = [];
   const others: number[] = [];
   for (let reach = 0; reach < network.reachCount; reach++) {
-    if (hasWindow(network.chip.channels[network.reachChannel[reach]])) windowed.push(reach);
+    if (hasWindow(run.channels[network.reachChannel[reach]])) windowed.push(reach);
     else if (!Number.isNaN(values[reach])) others.push(reach);
   }
   others.sort((a, b) => network.reachDrawnMm[b] - network.reachDrawnMm[a] || a - b);

@@ -1,7 +1,7 @@
-import type { Network } from '../network/types.ts';
 import { sectionForm } from '../physics/section.ts';
 import { formatNumber, type Show, type Unit } from '../runsheet/shown.ts';
 import type { PumpLimitEntry, Window } from '../runsheet/types.ts';
+import type { RunNetwork } from '../solve/flow-network.ts';
 import type { FoundTarget } from '../solve/targets.ts';
 import { lineAt, settingsFor } from '../solve/targets-limits.ts';
 import { targetValue } from '../solve/targets-wanted.ts';
@@ -33,13 +33,13 @@ const SAMPLES = 240;
 const FARTHEST = 4;
 
 /** The curve of one target: its port's setting alone is turned, the others stay as found. */
-export function pumpCurve(network: Network, target: FoundTarget, show: Show): PumpCurve {
+export function pumpCurve({ network, run }: RunNetwork, target: FoundTarget, show: Show): PumpCurve {
   const { wanted, response, range } = target;
   const { entry, measure, drive, port, name } = wanted;
   const { setting, observed } = response;
-  const pumpLimits = network.chip.sheet?.pumpLimits[entry.by];
+  const pumpLimits = run.sheet?.pumpLimits[entry.by];
   const limits = pumpLimits === undefined ? [] : limitLines(target, pumpLimits);
-  const windows = windowsOf(network, target);
+  const windows = windowsOf({ network, run }, target);
   const size = Math.max(Math.abs(setting), ...endsOf(range).map(Math.abs));
   const near = (at: number): boolean => Math.abs(at) <= FARTHEST * size;
   const settings = [0, setting, ...endsOf(range), ...limits.map(({ at }) => at).filter(near)];
@@ -140,7 +140,7 @@ function limitLines(
 
 /** The target's own window, and the channel's window on the same quantity in terms of the target. */
 function windowsOf(
-  network: Network,
+  { network, run }: RunNetwork,
   { wanted }: FoundTarget,
 ): { readonly window: Window; readonly text: string }[] {
   const { entry, observed } = wanted;
@@ -148,7 +148,7 @@ function windowsOf(
   if (typeof entry.value !== 'number') windows.push({ window: entry.value, text: 'target' });
   if (observed.kind !== 'reach') return windows;
   const channel = network.chip.channels[network.reachChannel[observed.reach]];
-  const { settings } = channel;
+  const settings = run.channels[network.reachChannel[observed.reach]];
   if (settings === null) return windows;
   const text = `window of ${channel.name}`;
   if (entry.quantity === 'wall_shear' && settings.wallShear !== null) {

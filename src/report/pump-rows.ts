@@ -50,7 +50,7 @@ export function targetCells({ wanted, reached }: FoundTarget, show: Show): Targe
 }
 
 export function settingCells(
-  { network, findings, show }: Pick<ReportedCase, 'network' | 'findings' | 'show'>,
+  { network, run, findings, show }: Pick<ReportedCase, 'network' | 'run' | 'findings' | 'show'>,
   target: FoundTarget,
 ): SettingCells {
   const { wanted, response, portPressurePa } = target;
@@ -61,7 +61,7 @@ export function settingCells(
     pressure: fine(show, 'pressure', response.supplyPressurePa.at),
     flow: fine(show, 'flow', response.flowM3s.at),
     inChip: fine(show, 'pressure', portPressurePa),
-    ...limitsText(target, foundPumpLimits(chip, wanted.entry.by), show),
+    ...limitsText(target, foundPumpLimits(run, wanted.entry.by), show),
     breaks: brokenBy(target, name, findings.findings).join(', '),
   };
 }

@@ -1,6 +1,7 @@
-import type { Channel } from '../chip/types.ts';
+import { reachName } from '../network/names.ts';
 import { formatNumber, formatShare, type Show, type Shown } from '../runsheet/shown.ts';
-import type { Window } from '../runsheet/types.ts';
+import type { ChannelEntry, Window } from '../runsheet/types.ts';
+import type { RunNetwork } from '../solve/flow-network.ts';
 import type { ReportedCase } from './report.ts';
 import type { ReachRow } from './result-rows.ts';
 import { sectionCache } from './section-values.ts';
@@ -12,7 +13,7 @@ export type MapQuantity = 'shear' | 'pressure' | 'flow' | 'residence';
  * One value per reach (SI; NaN where there is none), without making rows: mean floor shear, magnitude of the flow,
  * residence time, or the mean of the two end pressures.
  */
-export function reachValues({ network, flow }: ReportedCase, quantity: MapQuantity): Float64Array {
+export function reachValues({ network, run, flow }: ReportedCase, quantity: MapQuantity): Float64Array {
   const { chip } = network;
   const sectionOf = sectionCache();
   const values = new Float64Array(network.reachCount);
@@ -32,7 +33,7 @@ export function reachValues({ network, flow }: ReportedCase, quantity: MapQuanti
         const { profile, ductWidthMm, depthMm } = chip.channels[network.reachChannel[reach]];
         return sectionOf(profile, ductWidthMm / 1000, depthMm / 1000).floorMeanPa(
           flowM3s,
-          chip.fluid.viscosityPaS,
+          run.fluid.viscosityPaS,
         );
       }
       case 'residence': {
@@ -55,7 +56,7 @@ export function reachesThatMatter(
   one: ReportedCase,
   count: number,
 ): { readonly rows: readonly ReachRow[]; readonly windows: boolean; readonly of: number } {
-  const { network, part } = one;
+  const { network, run, part } = one;
   const { channels } = network.chip;
   const outside = outsideWindows(one);
   const shear = reachValues(one, 'shear');
@@ -63,9 +64,9 @@ export function reachesThatMatter(
   const windowed: number[] = [];
   const sheared: number[] = [];
   for (let reach = 0; reach < network.reachCount; reach++) {
-    const channel = channels[network.reachChannel[reach]];
-    if (hasWindow(channel)) {
-      (outside(channel.name, network.reachName(reach)) ? failing : windowed).push(reach);
+    const channel = network.reachChannel[reach];
+    if (hasWindow(run.channels[channel])) {
+      (outside(channels[channel].name, reachName(network, reach)) ? failing : windowed).push(reach);
     }
     if (!Number.isNaN(shear[reach])) sheared.push(reach);
   }
@@ -97,15 +98,25 @@ export function outsideWindows({
   return (channel, reach) => channels.has(channel) || reaches.has(reach);
 }
 
-export function hasWindow({ settings }: Channel): boolean {
+/** Whether a window is asked of a channel. */
+export function hasWindow(settings: ChannelEntry | null): boolean {
   return (
     settings !== null &&
     (settings.wallShear !== null || settings.residenceTime !== null || settings.flow !== null)
   );
 }
 
+/** What is asked of the channels that have a window, by their name. */
+export function windowedChannels({ network, run }: RunNetwork): ReadonlyMap<string, ChannelEntry> {
+  const windowed = new Map<string, ChannelEntry>();
+  run.channels.forEach((settings, c) => {
+    if (settings !== null && hasWindow(settings)) windowed.set(network.chip.channels[c].name, settings);
+  });
+  return windowed;
+}
+
 /** The windows of a channel as text: "shear 0.05 to 0.5 Pa over 80 %". */
-export function windowTexts({ settings }: Channel, show: Show): readonly string[] {
+export function windowTexts(settings: ChannelEntry | null, show: Show): readonly string[] {
   if (settings === null) return [];
   const { wallShear, residenceTime, flow, walls } = settings;
   const texts: string[] = [];

@@ -1,10 +1,11 @@
+import type { Run } from '../chip/types.ts';
 import type { FindingReport } from '../findings/types.ts';
 import type { Network } from '../network/types.ts';
 import { type Show, showOf } from '../runsheet/shown.ts';
 import type { FoundSettings } from '../solve/targets.ts';
 import type { FlowState } from '../solve/types.ts';
 import type { Spread } from '../spread/types.ts';
-import { buildCasesResult, buildResult, type CasePart, type Result, type ResultInput } from './result.ts';
+import { buildResult, type CaseInput, type CasePart, type ReportInput, type Result } from './result.ts';
 
 /** One case with everything that its pages, pictures and summary are drawn from. */
 export interface ReportedCase {
@@ -12,6 +13,7 @@ export interface ReportedCase {
   readonly name: string | null;
   readonly part: CasePart;
   readonly network: Network;
+  readonly run: Run;
   readonly flow: FlowState;
   readonly findings: FindingReport;
   readonly show: Show;
@@ -37,37 +39,31 @@ export function casesLeftOut({ cases, sheetCases }: Pick<Report, 'cases' | 'shee
   return sheetCases.filter((name) => !seen.has(name));
 }
 
-/** Report of a layout without cases. */
-export function buildReport(input: ResultInput): Report {
+/** The report of a layout under its cases, in the order given. */
+export function buildReport(input: ReportInput): Report {
   const result = buildResult(input);
-  return { result, cases: [reportedCase(null, input, result)], sheetCases: [] };
-}
-
-/**
- * Report of a layout under several cases, in the order given.
- * @param sheetCases names of all cases of the run sheet, where not all are reported
- */
-export function buildCasesReport(
-  cases: readonly { readonly name: string; readonly input: ResultInput }[],
-  sheetCases: readonly string[] = cases.map(({ name }) => name),
-): Report {
-  const result = buildCasesResult(cases);
+  const parts = 'cases' in result ? result.cases : [result];
   return {
     result,
-    cases: cases.map(({ name, input }, i) => reportedCase(name, input, result.cases[i])),
-    sheetCases,
+    cases: input.cases.map((one, i) => reportedCase(one, parts[i])),
+    sheetCases: input.sheet?.cases.map(({ name }) => name) ?? [],
   };
 }
 
-function reportedCase(name: string | null, input: ResultInput, part: CasePart): ReportedCase {
-  const { network, flow, findings, chip } = input;
+function reportedCase(
+  { name, network, run, flow, findings, centrelineFlow, found, spread }: CaseInput,
+  part: CasePart,
+): ReportedCase {
   return {
     name,
     part,
     network,
+    run,
     flow,
     findings,
-    show: showOf(chip.sheet?.show ?? null),
-    centrelineFlow: input.centrelineFlow ?? null,
+    show: showOf(run.sheet?.show ?? null),
+    centrelineFlow: centrelineFlow ?? null,
+    ...(found === undefined ? {} : { pump: found }),
+    ...(spread === undefined ? {} : { spread }),
   };
 }

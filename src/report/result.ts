@@ -1,10 +1,16 @@
-import type { Chip, Port } from '../chip/types.ts';
+import type { Chip, Port, PortRun, Run } from '../chip/types.ts';
 import type { FindingReport } from '../findings/types.ts';
+import { nodeName, reachName, segmentName } from '../network/names.ts';
 import { type Network, NODE_KINDS } from '../network/types.ts';
 import { tubeVolume } from '../physics/tube.ts';
+import type { RunSheet } from '../runsheet/types.ts';
+import type { RunNetwork } from '../solve/flow-network.ts';
 import type { JointShares } from '../solve/joint-share.ts';
+import type { FoundSettings } from '../solve/targets.ts';
 import type { FlowState } from '../solve/types.ts';
+import type { Spread } from '../spread/types.ts';
 import { RESULT_VERSION } from '../version.ts';
+import { pumpPartOf } from './pump-part.ts';
 import type {
   BalanceRow,
   CountsRow,
@@ -23,6 +29,7 @@ import type {
 } from './result-rows.ts';
 import { type Rows, rows } from './rows.ts';
 import { sectionCache } from './section-values.ts';
+import { spreadPartOf } from './spread-part.ts';
 
 /** What one case adds: everything but tool, layout and run sheet. Keys and their order are those of the JSON document. */
 export interface CasePart {
@@ -56,68 +63,76 @@ export interface CasesResult extends Head {
 
 export type Result = SingleResult | CasesResult;
 
-export interface ResultInput {
-  readonly tool: { readonly name: string; readonly version: string };
+/** One case, computed. */
+export interface CaseInput {
+  /** null when the run sheet has no cases. */
+  readonly name: string | null;
   readonly chip: Chip;
+  readonly run: Run;
   readonly network: Network;
   readonly flow: FlowState;
   readonly findings: FindingReport;
-  /** File name of the layout as printed. */
-  readonly layoutFile: string;
   /** How far unresolved joints could move flows and pressures. */
   readonly jointShares?: JointShares;
   /** The flows that counting centrelines alone would give, for the report's list of joints; found when asked for. */
   readonly centrelineFlow?: () => FlowState;
-  readonly pump?: PumpPart;
-  readonly spread?: SpreadPart;
+  /** Settings found for targets, at which the chip was computed. */
+  readonly found?: FoundSettings;
+  /** How far tolerances move it. */
+  readonly spread?: Spread;
+}
+
+export interface ReportInput {
+  readonly tool: { readonly name: string; readonly version: string };
+  /** File name as printed, and the hash of the file. */
+  readonly layout: { readonly file: string; readonly sha256: string };
+  /** null without a run sheet. */
+  readonly sheet: (Pick<RunSheet, 'file' | 'cases'> & { readonly sha256: string }) | null;
+  /** In the order given; one without a name stands alone. */
+  readonly cases: readonly CaseInput[];
 }
 
 /**
- * The result of one case in SI units, keys as in the JSON document. Nodes, reaches and segments are rows made on demand.
- * What does not exist (a sealed branch's residence time, a pressure without reference) is null.
+ * The result of a layout under its cases in SI units, keys as in the JSON document. Nodes, reaches and segments are rows made on
+ * demand. What does not exist (a sealed branch's residence time, a pressure without reference) is null.
  */
-export function buildResult(input: ResultInput): SingleResult {
-  return { ...headOf(input), ...casePartOf(input) };
-}
-
-/** Several cases of one layout in one document, in the order given. */
-export function buildCasesResult(
-  cases: readonly { readonly name: string; readonly input: ResultInput }[],
-): CasesResult {
-  if (cases.length === 0) throw new RangeError('a result of cases needs at least one case');
-  const parts = cases.map(({ name, input }) => ({ case: name, ...casePartOf(input) }));
+export function buildResult(input: ReportInput): Result {
+  const [first] = input.cases;
+  if (first === undefined) throw new RangeError('a result needs at least one case');
+  const head = headOf(input, first.chip);
+  if (first.name === null) return { ...head, ...casePartOf(first) };
+  const parts = input.cases.map((one) => ({ case: one.name ?? '', ...casePartOf(one) }));
   return {
-    ...headOf(cases[0].input),
+    ...head,
     verdict: parts.some((part) => part.verdict === 'hold') ? 'hold' : 'ready',
     cases: parts,
   };
 }
 
-function headOf({ tool, chip, layoutFile }: ResultInput): Head {
+function headOf({ tool, layout, sheet }: ReportInput, chip: Chip): Head {
   return {
     tool: { name: tool.name, version: tool.version, result_version: RESULT_VERSION },
     layout: {
-      file: layoutFile,
-      sha256: chip.layoutSha256,
+      file: layout.file,
+      sha256: layout.sha256,
       width_mm: chip.widthMm,
       height_mm: chip.heightMm,
       unit_mm: chip.unitMm,
       ignored: chip.ignored,
     },
-    run_sheet:
-      chip.sheet === null ? null : { file: withoutFolders(chip.sheet.file), sha256: chip.sheet.sha256 },
+    run_sheet: sheet === null ? null : { file: withoutFolders(sheet.file), sha256: sheet.sha256 },
   };
 }
 
-function casePartOf(input: ResultInput): CasePart {
-  const { chip, network, flow, findings } = input;
+function casePartOf(input: CaseInput): CasePart {
+  const { chip, run, network, flow, findings } = input;
   const sectionOf = sectionCache();
   return {
     fluid: {
-      name: chip.fluid.name,
-      temperature_c: celsius(chip.fluid.temperatureK),
-      viscosity_pa_s: chip.fluid.viscosityPaS,
-      density_kg_m3: chip.fluid.densityKgM3,
+      name: run.fluid.name,
+      temperature_c: celsius(run.fluid.temperatureK),
+      viscosity_pa_s: run.fluid.viscosityPaS,
+      density_kg_m3: run.fluid.densityKgM3,
     },
     verdict: findings.verdict,
     counts: {
@@ -132,20 +147,20 @@ function casePartOf(input: ResultInput): CasePart {
       accepted: findings.counts.accepted,
       rules_not_run: findings.counts.rulesNotRun,
     },
-    ports: chip.ports.map((port, i) => portRow(port, i, flow, input.jointShares)),
+    ports: chip.ports.map((port, i) => portRow(port, run.ports[i], i, flow, input.jointShares)),
     nodes: rows(network.nodeCount, (node) => nodeRow(network, flow, node)),
     reaches: rows(network.reachCount, (reach) =>
-      reachRow(network, flow, reach, sectionOf, input.jointShares),
+      reachRow({ network, run }, flow, reach, sectionOf, input.jointShares),
     ),
-    segments: rows(network.segmentCount, (segment) => segmentRow(network, flow, segment, sectionOf)),
+    segments: rows(network.segmentCount, (segment) => segmentRow({ network, run }, flow, segment, sectionOf)),
     findings: findings.findings.map(findingRow),
     not_run: findings.notRun.map(({ rule, why }) => ({ rule, why })),
     balance: {
       worst_imbalance: known(flow.worstImbalance) ?? 0,
-      worst_node: flow.worstNode < 0 ? null : network.nodeName(flow.worstNode),
+      worst_node: flow.worstNode < 0 ? null : nodeName(network, flow.worstNode),
     },
-    ...(input.pump === undefined ? {} : { pump: input.pump }),
-    ...(input.spread === undefined ? {} : { spread: input.spread }),
+    ...(input.found === undefined ? {} : { pump: pumpPartOf(network, input.found) }),
+    ...(input.spread === undefined ? {} : { spread: spreadPartOf(input.spread) }),
   };
 }
 
@@ -154,18 +169,24 @@ function celsius(kelvin: number): number {
   return Number((kelvin - 273.15).toFixed(9));
 }
 
-function portRow(port: Port, index: number, flow: FlowState, jointShares: JointShares | undefined): PortRow {
+function portRow(
+  port: Port,
+  { condition, tubing }: PortRun,
+  index: number,
+  flow: FlowState,
+  jointShares: JointShares | undefined,
+): PortRow {
   const flowM3s = flow.portFlow[index];
   const volumeM3 =
-    port.tubing.length === 0
+    tubing.length === 0
       ? null
-      : port.tubing.reduce((sum, piece) => sum + tubeVolume(piece.boreM, piece.lengthM), 0);
+      : tubing.reduce((sum, piece) => sum + tubeVolume(piece.boreM, piece.lengthM), 0);
   return {
     name: port.name,
     x_mm: port.xMm,
     y_mm: port.yMm,
     diameter_mm: 2 * port.radiusMm,
-    condition: port.condition.kind,
+    condition: condition.kind,
     pressure_pa: known(flow.portPressure[index]),
     supply_pressure_pa: known(flow.supplyPressure[index]),
     flow_m3_s: known(flowM3s),
@@ -178,7 +199,7 @@ function portRow(port: Port, index: number, flow: FlowState, jointShares: JointS
 
 function nodeRow(network: Network, flow: FlowState, node: number): NodeRow {
   return {
-    name: network.nodeName(node),
+    name: nodeName(network, node),
     kind: NODE_KINDS[network.nodeKind[node]],
     x_mm: network.nodeX[node],
     y_mm: network.nodeY[node],
@@ -189,7 +210,7 @@ function nodeRow(network: Network, flow: FlowState, node: number): NodeRow {
 type SectionOf = ReturnType<typeof sectionCache>;
 
 function reachRow(
-  network: Network,
+  { network, run }: RunNetwork,
   flow: FlowState,
   reach: number,
   sectionOf: SectionOf,
@@ -201,18 +222,18 @@ function reachRow(
   const lengthM = network.reachDuctMm[reach] / 1000;
   const jointM = network.reachJointMm[reach] / 1000;
   const flowM3s = flow.reachFlow[reach];
-  const state = section.at(flowM3s, chip.fluid);
+  const state = section.at(flowM3s, run.fluid);
   const bendM = tightestBendM(network, reach);
-  const window = channel.settings?.wallShear ?? null;
+  const window = run.channels[network.reachChannel[reach]]?.wallShear ?? null;
   // what a joint adds is resistance, not room: volume and times use the length without it
   const roomM = lengthM - jointM;
   const volumeM3 = section.areaM2 * roomM;
   return {
-    name: network.reachName(reach),
+    name: reachName(network, reach),
     channel: channel.name,
     layer: chip.layers[channel.layer].name || null,
-    from: network.nodeName(network.reachFrom[reach]),
-    to: network.nodeName(network.reachTo[reach]),
+    from: nodeName(network, network.reachFrom[reach]),
+    to: nodeName(network, network.reachTo[reach]),
     width_m: known(channel.ductWidthMm / 1000),
     depth_m: known(channel.depthMm / 1000),
     drawn_length_m: network.reachDrawnMm[reach] / 1000,
@@ -234,7 +255,7 @@ function reachRow(
       window === null
         ? null
         : known(
-            section.floorShareInside(flowM3s, chip.fluid.viscosityPaS, {
+            section.floorShareInside(flowM3s, run.fluid.viscosityPaS, {
               minPa: window.min,
               maxPa: window.max,
             }),
@@ -256,7 +277,12 @@ function tightestBendM(network: Network, reach: number): number {
   return radiusMm === Number.POSITIVE_INFINITY ? 0 : radiusMm / 1000;
 }
 
-function segmentRow(network: Network, flow: FlowState, segment: number, sectionOf: SectionOf): SegmentRow {
+function segmentRow(
+  { network, run }: RunNetwork,
+  flow: FlowState,
+  segment: number,
+  sectionOf: SectionOf,
+): SegmentRow {
   const { chip } = network;
   const reach = network.segmentReach[segment];
   const channel = chip.channels[network.reachChannel[reach]];
@@ -265,8 +291,8 @@ function segmentRow(network: Network, flow: FlowState, segment: number, sectionO
   const flowM3s = flow.reachFlow[reach];
   const resistance = flow.reachResistance[reach] * (ductMm / network.reachDuctMm[reach]);
   return {
-    name: network.segmentName(segment),
-    reach: network.reachName(reach),
+    name: segmentName(network, segment),
+    reach: reachName(network, reach),
     x1_mm: network.segmentX1[segment],
     y1_mm: network.segmentY1[segment],
     x2_mm: network.segmentX2[segment],
@@ -274,8 +300,8 @@ function segmentRow(network: Network, flow: FlowState, segment: number, sectionO
     length_m: ductMm / 1000,
     resistance_pa_s_m3: known(resistance),
     pressure_drop_pa: known(resistance * flowM3s),
-    wall_shear_floor_mean_pa: known(section.floorMeanPa(flowM3s, chip.fluid.viscosityPaS)),
-    wall_shear_floor_peak_pa: known(section.floorPeakPa(flowM3s, chip.fluid.viscosityPaS)),
+    wall_shear_floor_mean_pa: known(section.floorMeanPa(flowM3s, run.fluid.viscosityPaS)),
+    wall_shear_floor_peak_pa: known(section.floorPeakPa(flowM3s, run.fluid.viscosityPaS)),
     residence_time_s: known((section.areaM2 * ductMm) / 1000 / Math.abs(flowM3s)),
   };
 }

@@ -1,3 +1,4 @@
+import { reachName } from '../network/names.ts';
 import {
   drawMap,
   type MapDrawing,
@@ -117,7 +118,7 @@ const LONG_TITLES = 10_000;
 function shortTitle({ network, flow, show }: ReportedCase, reach: number): string {
   const flowM3s = flow.reachFlow[reach];
   const dropPa = flow.reachPressureDrop[reach];
-  return `${cleanText(network.reachName(reach))}: ${show.text('flow', known(flowM3s))}, ${show.text('pressure', known(dropPa))}`;
+  return `${cleanText(reachName(network, reach))}: ${show.text('flow', known(flowM3s))}, ${show.text('pressure', known(dropPa))}`;
 }
 
 function known(value: number): number | null {

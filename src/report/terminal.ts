@@ -1,7 +1,7 @@
 import picocolors from 'picocolors';
 import { formatMm } from '../runsheet/shown.ts';
 import { cleanText, clipText, displayWidth, padText, wrapText } from './plain-text.ts';
-import { hasWindow, outsideWindows, reachesThatMatter, windowTexts } from './reach-values.ts';
+import { outsideWindows, reachesThatMatter, windowedChannels, windowTexts } from './reach-values.ts';
 import type { Report, ReportedCase } from './report.ts';
 import type { FindingRow } from './result-rows.ts';
 import { casesLine, verdictCounts } from './verdict-line.ts';
@@ -93,24 +93,22 @@ function portLines({ part, show }: ReportedCase, width: number, paint: Paint): s
 }
 
 function channelLines(one: ReportedCase, width: number, paint: Paint): string[] {
-  const { network, show } = one;
+  const { show } = one;
   const matter = reachesThatMatter(one, CHANNEL_LINES);
   if (matter.rows.length === 0) return [];
-  const channels = new Map(
-    matter.windows ? network.chip.channels.filter(hasWindow).map((channel) => [channel.name, channel]) : [],
-  );
+  const channels = windowedChannels(one);
   const outside = outsideWindows(one);
   const rows = matter.rows.map((row) => {
-    const channel = channels.get(row.channel);
+    const settings = channels.get(row.channel);
     return [
       cleanText(row.name),
       show.text('flow', row.flow_m3_s),
       show.text('wall_shear', row.wall_shear_floor_mean_pa),
       show.text('wall_shear', row.wall_shear_floor_peak_pa),
       show.text('residence_time', row.residence_time_s),
-      channel === undefined
+      settings === undefined
         ? ''
-        : `${outside(row.channel, row.name) ? 'outside: ' : ''}${windowTexts(channel, show).join('; ')}`,
+        : `${outside(row.channel, row.name) ? 'outside: ' : ''}${windowTexts(settings, show).join('; ')}`,
     ];
   });
   return [

@@ -1,4 +1,3 @@
-import { createHash } from 'node:crypto';
 import * as v from 'valibot';
 import { InputError } from '../errors.ts';
 import { withDecodedNames } from './decoded-names.ts';
@@ -33,7 +32,7 @@ import type {
  * @throws InputError with file and line: `culture.run.yaml:14: ports.feed.pressure: "12" has no unit; write for example "12 kPa"`
  */
 export function parseRunSheet(text: string, file: string): RunSheet {
-  const source: Source = { file, text, sha256: createHash('sha256').update(text, 'utf8').digest('hex') };
+  const source: Source = { file, text };
   const root = withDecodedNames(withoutEmpty(parseTree(text, file)), file);
   const values = validate(sheetSchema, root, file, []);
   return { ...toRunSheet(values, root, source, []), cases: parseCases(root, values, source) };
@@ -42,7 +41,6 @@ export function parseRunSheet(text: string, file: string): RunSheet {
 interface Source {
   readonly file: string;
   readonly text: string;
-  readonly sha256: string;
 }
 
 const MOST_CASES = 100;

@@ -1,3 +1,4 @@
+import { utf8Length } from '../utf8-length.ts';
 /**
  * A run sheet's YAML as a tree of texts, maps and lists that know their lines, before any key is judged.
  *
@@ -56,7 +57,7 @@ export type TreeNode = TextNode | MapNode | ListNode;
  * @throws InputError naming file and line
  */
 export function parseTree(text: string, file: string): MapNode {
-  if (Buffer.byteLength(text) > LARGEST_BYTES) {
+  if (utf8Length(text) > LARGEST_BYTES) {
     throw new InputError(
       file,
       'is over the limit "run sheet size" of 1 MB; leave out what the chip does not need',

@@ -194,7 +194,6 @@ export interface RunSheet {
   readonly file: string;
   /** The whole text, as printed in the report. */
   readonly text: string;
-  readonly sha256: string;
   readonly title: string | null;
   readonly drawing: {
     readonly number: string | null;

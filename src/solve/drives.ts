@@ -1,5 +1,5 @@
 import { GRAVITY_M_S2 } from '../physics/constants.ts';
-import type { FlowNetwork } from './flow-network.ts';
+import type { FlowRun } from './flow-network.ts';
 
 /** What is done to a port at the far end of its tubing (at the port itself without): the condition of the run sheet in terms of the network. */
 export type PortDrive =
@@ -10,7 +10,7 @@ export type PortDrive =
   | { readonly kind: 'none' };
 
 /** Drives of all ports as the run sheet sets them. A head h of liquid stands for ρ g h. */
-export function drivesOf({ ports, fluid }: FlowNetwork['chip']): readonly PortDrive[] {
+export function drivesOf({ ports, fluid }: FlowRun): readonly PortDrive[] {
   return ports.map(({ condition }): PortDrive => {
     switch (condition.kind) {
       case 'pressure':

@@ -1,4 +1,4 @@
-import type { Channel, Chip, Port } from '../chip/types.ts';
+import type { Channel, PortRun, Run } from '../chip/types.ts';
 import type { Network } from '../network/types.ts';
 
 /** What of a Network decides its flow. */
@@ -6,9 +6,16 @@ export type FlowNetwork = Pick<
   Network,
   'nodeCount' | 'portNode' | 'reachCount' | 'reachChannel' | 'reachFrom' | 'reachTo' | 'reachDuctMm'
 > & {
-  readonly chip: {
-    readonly fluid: Chip['fluid'];
-    readonly ports: readonly Pick<Port, 'condition' | 'tubing'>[];
-    readonly channels: readonly Pick<Channel, 'ductWidthMm' | 'depthMm'>[];
-  };
+  readonly chip: { readonly channels: readonly Pick<Channel, 'ductWidthMm' | 'depthMm'>[] };
 };
+
+/** What of a Run decides a flow. */
+export type FlowRun = Pick<Run, 'fluid'> & {
+  readonly ports: readonly Pick<PortRun, 'condition' | 'tubing'>[];
+};
+
+/** A network and how it is run: what analyses, findings and reports have in common. */
+export interface RunNetwork {
+  readonly network: Network;
+  readonly run: Run;
+}

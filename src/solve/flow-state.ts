@@ -10,7 +10,7 @@
 import { type Balance, balanceOf } from './balance.ts';
 import { drivesOf, type PortDrive } from './drives.ts';
 import type { FlowGraph } from './flow-graph.ts';
-import type { FlowNetwork } from './flow-network.ts';
+import type { FlowNetwork, FlowRun } from './flow-network.ts';
 import {
   analyseGraph,
   factorGraph,
@@ -57,10 +57,10 @@ type PartOutlook =
   | { readonly kind: 'undriven' }
   | { readonly kind: 'unsized'; readonly floating: boolean };
 
-/** Flow state of a network under its own run sheet. */
-export function solveFlow(network: FlowNetwork): FlowState {
-  const prepared = prepareFlow(network);
-  const drives = drivesOf(network.chip);
+/** Flow state of a network as a run sets its ports. */
+export function solveFlow(network: FlowNetwork, run: FlowRun): FlowState {
+  const prepared = prepareFlow(network, run);
+  const drives = drivesOf(run);
   return flowStateOf(factorFlow(prepared, kindsOf(drives)), drives);
 }
 
@@ -74,9 +74,10 @@ export function kindsOf(drives: readonly PortDrive[]): readonly PortDrive['kind'
  */
 export function prepareFlow(
   network: FlowNetwork,
+  run: FlowRun,
   options: { readonly watchedNodes?: readonly number[] } = {},
 ): PreparedFlow {
-  const nominal = nominalResistances(network);
+  const nominal = nominalResistances(network, run);
   const { nodeCount, reachFrom, reachTo, reachCount, portNode } = network;
   const driveNode = portNode.slice();
   const tubingEdge = new Int32Array(portNode.length).fill(-1);

@@ -1,5 +1,6 @@
 import type { Network } from '../network/types.ts';
 import type { PortDrive } from './drives.ts';
+import type { RunNetwork } from './flow-network.ts';
 import { type FlowFactor, factorFlow, flowStateOf } from './flow-state.ts';
 import { type GraphFlow, type GraphLoad, solveGraph } from './graph.ts';
 import type { FlowState } from './types.ts';
@@ -29,7 +30,7 @@ const LEAST_PORTS = 16;
  * it: ∂Q/∂R_e = −q_e Q_e with q the flows under 1 Pa at the result's own place (see sensitivity.ts).
  */
 export function jointShares(
-  network: Network,
+  { network, run }: RunNetwork,
   factor: FlowFactor,
   drives: readonly PortDrive[],
   flow: FlowState,
@@ -41,7 +42,7 @@ export function jointShares(
   const moved =
     sources.length * graph.from.length <= mostWork
       ? movedBySources(network, factor, sources)
-      : movedByAdjoint(network, factor, drives, flow, dropPa, mostWork);
+      : movedByAdjoint({ network, run }, factor, drives, flow, dropPa, mostWork);
   const { portFlow, portPressure, reachFlow } = moved;
   drives.forEach((drive, port) => {
     if (drive.kind === 'flow') portFlow[port] = 0;
@@ -148,14 +149,14 @@ function movedBySources(
 
 /** What moves the ports, the largest flows first, and the reaches with a window, as far as the work allows; NaN for the rest. */
 function movedByAdjoint(
-  network: Network,
+  { network, run }: RunNetwork,
   factor: FlowFactor,
   drives: readonly PortDrive[],
   flow: FlowState,
   dropPa: Float64Array,
   mostWork: number,
 ): Moved {
-  const { chip, reachChannel, reachCount, portNode } = network;
+  const { reachChannel, reachCount, portNode } = network;
   const { graph, driveNode, tubingEdge } = factor.prepared;
   const nought = new Float64Array(graph.nodeCount);
   const moved: Moved = {
@@ -195,7 +196,7 @@ function movedByAdjoint(
   }
   const watched: number[] = [];
   for (let r = 0; r < reachCount; r++)
-    if (chip.channels[reachChannel[r]].settings !== null && flow.reachFlow[r] !== 0) watched.push(r);
+    if (run.channels[reachChannel[r]] !== null && flow.reachFlow[r] !== 0) watched.push(r);
   for (const r of watched.slice(0, solvesFor(mostWork)))
     moved.reachFlow[r] = movedBy({ source: { edge: r, pressure: 1 } });
   return moved;

@@ -1,6 +1,8 @@
+import { viscosityAt } from '../chip/fluid.ts';
+import type { Fluid } from '../chip/types.ts';
 import { resistancePerLength } from '../physics/duct.ts';
 import { tubeResistance } from '../physics/tube.ts';
-import type { FlowNetwork } from './flow-network.ts';
+import type { FlowNetwork, FlowRun } from './flow-network.ts';
 
 export interface Resistances {
   /** Pa s/m³, one per reach; NaN where width or depth is unknown. */
@@ -10,19 +12,22 @@ export interface Resistances {
 }
 
 /** Resistances of all reaches at the chip's temperature, and of all tubing with each piece at its own. */
-export function nominalResistances(network: FlowNetwork): Resistances {
-  return { reach: reachResistances(network), tubing: tubingResistances(network) };
+export function nominalResistances(network: FlowNetwork, run: FlowRun): Resistances {
+  return { reach: reachResistances(network, run.fluid), tubing: tubingResistances(run) };
 }
 
-function reachResistances({ chip, reachCount, reachChannel, reachDuctMm }: FlowNetwork): Float64Array {
-  const perLength = channelResistancesPerLength(chip);
+function reachResistances(
+  { chip, reachCount, reachChannel, reachDuctMm }: FlowNetwork,
+  fluid: Fluid,
+): Float64Array {
+  const perLength = channelResistancesPerLength(chip, fluid);
   const resistance = new Float64Array(reachCount);
   for (let r = 0; r < reachCount; r++) resistance[r] = (perLength[reachChannel[r]] * reachDuctMm[r]) / 1000;
   return resistance;
 }
 
 /** Pa s/m³ per metre; the series is summed once for each distinct section. */
-function channelResistancesPerLength({ channels, fluid }: FlowNetwork['chip']): Float64Array {
+function channelResistancesPerLength({ channels }: FlowNetwork['chip'], fluid: Fluid): Float64Array {
   const byDepth = new Map<number, Map<number, number>>();
   return Float64Array.from(channels, ({ ductWidthMm, depthMm }) => {
     if (Number.isNaN(ductWidthMm) || Number.isNaN(depthMm)) return Number.NaN;
@@ -40,12 +45,11 @@ function channelResistancesPerLength({ channels, fluid }: FlowNetwork['chip']): 
   });
 }
 
-function tubingResistances({ chip }: FlowNetwork): Float64Array {
-  const { fluid } = chip;
-  return Float64Array.from(chip.ports, ({ tubing }) => {
+function tubingResistances({ fluid, ports }: FlowRun): Float64Array {
+  return Float64Array.from(ports, ({ tubing }) => {
     let sum = 0;
     for (const { boreM, lengthM, temperatureK } of tubing) {
-      const viscosityPaS = temperatureK === null ? fluid.viscosityPaS : fluid.viscosityAt(temperatureK);
+      const viscosityPaS = temperatureK === null ? fluid.viscosityPaS : viscosityAt(fluid, temperatureK);
       sum += tubeResistance(boreM, lengthM, viscosityPaS);
     }
     return sum;

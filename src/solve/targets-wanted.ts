@@ -1,11 +1,13 @@
 import { refuse } from '../chip/complain.ts';
 import { refuseSeveral } from '../chip/targets.ts';
 import { findNodes } from '../network/find-node.ts';
+import { nodeName, reachName } from '../network/names.ts';
 import type { Network } from '../network/types.ts';
 import { sectionForm } from '../physics/section.ts';
 import { nearest } from '../runsheet/nearest.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { RunSheet, TargetEntry } from '../runsheet/types.ts';
+import type { RunNetwork } from './flow-network.ts';
 import type { FlowState } from './types.ts';
 
 /** What is looked at in a flow state. All three are linear in every port's setting. */
@@ -51,8 +53,8 @@ export interface Interval {
  * @throws InputError at the target's line for a name that the network lacks, a channel of several reaches without `reach:`, several targets by one port,
  * a reach whose width or depth is unknown, a negative velocity, a window that any setting keeps
  */
-export function readTargets(network: Network): readonly Wanted[] {
-  const { sheet } = network.chip;
+export function readTargets({ network, run }: RunNetwork): readonly Wanted[] {
+  const { sheet } = run;
   if (sheet === null) return [];
   refuseSharedPorts(sheet);
   return sheet.targets.map((entry): Wanted => {
@@ -60,9 +62,9 @@ export function readTargets(network: Network): readonly Wanted[] {
     const port = network.chip.ports.findIndex(({ drawnName }) => drawnName === entry.by);
     if (port < 0) refuseTarget(sheet, index, `by: the drawing has no port ${quote(entry.by)}`);
     const observed = observedOf(network, sheet, entry, index);
-    const measure = measureOf(network, sheet, entry, index, observed);
+    const measure = measureOf({ network, run }, sheet, entry, index, observed);
     refuseValue(sheet, entry, index, measure);
-    const drive = network.chip.ports[port].condition.kind === 'flow' ? 'flow' : 'pressure';
+    const drive = run.ports[port].condition.kind === 'flow' ? 'flow' : 'pressure';
     return { index, entry, observed, measure, port, drive, name: nameOf(network, observed) };
   });
 }
@@ -183,7 +185,7 @@ function reachOf(network: Network, sheet: RunSheet, { name, reach }: TargetEntry
       `channel: ${quote(name)} has no reach that resists flow: all of it lies in wells or joints, or was left out`,
     );
   }
-  const names = reaches.map(network.reachName);
+  const names = reaches.map((r) => reachName(network, r));
   if (reach === null) {
     if (reaches.length === 1) return reaches[0];
     refuseTarget(
@@ -208,8 +210,14 @@ function nodeOf(network: Network, sheet: RunSheet, name: string, index: number):
   const found = findNodes(network, name);
   if (found.length === 1) return found[0];
   if (found.length > 1)
-    refuseSeveral(sheet, ['targets', index, 'node'], name, 'node', found.map(network.nodeName));
-  const names = Array.from({ length: network.nodeCount }, (_, node) => network.nodeName(node));
+    refuseSeveral(
+      sheet,
+      ['targets', index, 'node'],
+      name,
+      'node',
+      found.map((n) => nodeName(network, n)),
+    );
+  const names = Array.from({ length: network.nodeCount }, (_, node) => nodeName(network, node));
   const near = nearest(name, names);
   return refuseTarget(
     sheet,
@@ -219,7 +227,7 @@ function nodeOf(network: Network, sheet: RunSheet, name: string, index: number):
 }
 
 function measureOf(
-  network: Network,
+  { network, run }: RunNetwork,
   sheet: RunSheet,
   { quantity, at }: TargetEntry,
   index: number,
@@ -240,7 +248,7 @@ function measureOf(
     case 'wall_shear': {
       // τ = (τ/G) G with G = µ (R/µL) Q
       const perGradient = at === 'mean' ? form.floorMean : form.floorPeak;
-      return { kind: 'size', factor: perGradient * chip.fluid.viscosityPaS * form.resistance };
+      return { kind: 'size', factor: perGradient * run.fluid.viscosityPaS * form.resistance };
     }
     case 'velocity':
       return { kind: 'size', factor: 1 / form.areaM2 };
@@ -282,11 +290,11 @@ function refuseValue(
 function nameOf(network: Network, observed: Observed): string {
   switch (observed.kind) {
     case 'reach':
-      return network.reachName(observed.reach);
+      return reachName(network, observed.reach);
     case 'port':
       return network.chip.ports[observed.port].name;
     case 'node':
-      return network.nodeName(observed.node);
+      return nodeName(network, observed.node);
     default:
       return observed satisfies never;
   }

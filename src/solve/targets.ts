@@ -6,11 +6,13 @@
  * nothing flows there, that in which `by` drives it by pushing into the chip, or by drawing out of it where it says `expect: out`.
  */
 import { foundPumpLimits, pumpLimitValues } from '../chip/pump-limits.ts';
+import type { Run } from '../chip/types.ts';
 import { InputError } from '../errors.ts';
 import type { Network } from '../network/types.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { PortCondition, RunSheet } from '../runsheet/types.ts';
 import { drivesOf, type PortDrive } from './drives.ts';
+import type { RunNetwork } from './flow-network.ts';
 import {
   type FlowFactor,
   factorFlow,
@@ -73,32 +75,30 @@ export interface FoundSettings {
  * @throws InputError at the target's line: see readTargets; and a target that does not feel its port, targets that depend on each other, parts of the chip in
  * which nothing can be computed
  */
-export function findSettings(network: Network): FoundSettings {
-  const { chip } = network;
-  const { sheet } = chip;
+export function findSettings(at: RunNetwork): FoundSettings {
+  const { sheet } = at.run;
   if (sheet === null || sheet.targets.length === 0) {
     throw new InputError(
-      sheet?.file ?? chip.file,
+      sheet?.file ?? at.network.chip.file,
       'there are no targets; write under targets for example "- { channel: lane-1, wall_shear: 0.3 Pa, by: feed }"',
     );
   }
-  const wanted = readTargets(network);
-  const system = prepareSystem(network, sheet, wanted);
-  const ways = waysOf(network, system, wanted);
+  const wanted = readTargets(at);
+  const system = prepareSystem(at, sheet, wanted);
+  const ways = waysOf(at.run, system, wanted);
   const first = wanted.map((target, i) => firstAim(target, ways[i]));
   let solution = settle(system, wanted, first);
   const aims = wanted.map((target, i) => betterAim(system, sheet, target, i, ways[i], solution, first[i]));
   if (aims.some((aim, i) => aim !== first[i])) solution = settle(system, wanted, aims);
   return {
     targets: wanted.map((target, i) => foundTarget(system, target, i, ways[i], solution)),
-    conditions: conditionsOf(network, wanted, solution.settings),
+    conditions: conditionsOf(at.run, wanted, solution.settings),
     flow: solution.state,
   };
 }
 
 /** The linear system y = y0 + A s of the targets. */
-interface System {
-  readonly network: Network;
+interface System extends RunNetwork {
   readonly prepared: PreparedFlow;
   readonly factor: FlowFactor;
   /** Drives with every wanted setting at nought. */
@@ -118,9 +118,9 @@ interface Solution {
 /** Sizes of a setting at which a chip's flows are of the usual size. */
 const UNIT = { pressure: 1e3, flow: 1e-9 } as const;
 
-function prepareSystem(network: Network, sheet: RunSheet, wanted: readonly Wanted[]): System {
-  const prepared = prepareFlow(network);
-  const written = drivesOf(network.chip);
+function prepareSystem({ network, run }: RunNetwork, sheet: RunSheet, wanted: readonly Wanted[]): System {
+  const prepared = prepareFlow(network, run);
+  const written = drivesOf(run);
   const start = [...written];
   for (const { port, drive } of wanted) start[port] = driveOf(drive, 0);
   refuseSharedNodes(network, sheet, prepared, wanted, start);
@@ -138,11 +138,11 @@ function prepareSystem(network: Network, sheet: RunSheet, wanted: readonly Wante
   );
   wanted.forEach((target, i) => {
     if (isDeaf(target, units[i], rows[i][i] * UNIT[target.drive]))
-      refuseTarget(sheet, target.index, whyDeaf(network, target, factor, units[i], start));
+      refuseTarget(sheet, target.index, whyDeaf({ network, run }, target, factor, units[i], start));
   });
   const dense = factorDense(rows);
   if (dense.kind === 'dependent') refuseDependent(sheet, wanted, dense.share);
-  return { network, prepared, factor, start, base, units, rows, dense };
+  return { network, run, prepared, factor, start, base, units, rows, dense };
 }
 
 function driveOf(kind: 'pressure' | 'flow', setting: number): PortDrive {
@@ -257,7 +257,7 @@ function largest(values: Float64Array): number {
 }
 
 function whyDeaf(
-  network: Network,
+  { network, run }: RunNetwork,
   { observed, port, name }: Wanted,
   { graphFactor }: FlowFactor,
   unit: FlowState,
@@ -268,13 +268,13 @@ function whyDeaf(
   const what = quote(name);
   const feels = `does not feel ${by}`;
   if (observed.kind === 'port' && start[observed.port].kind === 'none') {
-    const { kind } = chip.ports[observed.port].condition;
+    const { kind } = run.ports[observed.port].condition;
     return `${what} ${feels}: the port is ${kind === 'unset' ? 'not set' : kind}, so nothing passes it; give it a pressure, a head or open`;
   }
   if (observed.kind === 'port' && start[observed.port].kind === 'flow')
     return `${what} ${feels}: the run sheet gives its flow; give it a pressure, a head or open`;
   if (observed.kind === 'node') {
-    const holder = chip.ports.findIndex(
+    const holder = run.ports.findIndex(
       ({ tubing }, other) =>
         portNode[other] === observed.node && start[other].kind === 'pressure' && tubing.length === 0,
     );
@@ -300,7 +300,7 @@ function refuseDependent(sheet: RunSheet, wanted: readonly Wanted[], share: Floa
 }
 
 /** +1 or −1 for each target: the way of the flow that a target without sign is given. */
-function waysOf(network: Network, system: System, wanted: readonly Wanted[]): readonly (1 | -1)[] {
+function waysOf(run: Run, system: System, wanted: readonly Wanted[]): readonly (1 | -1)[] {
   let asWritten: FlowState | null = null;
   return wanted.map(({ observed, measure, port }, i) => {
     if (measure.kind === 'signed') return 1;
@@ -309,12 +309,12 @@ function waysOf(network: Network, system: System, wanted: readonly Wanted[]): re
     if (now > 0) return 1;
     if (now < 0) return -1;
     const pushing = system.rows[i][i] > 0;
-    return pushing !== (network.chip.ports[port].expect === 'out') ? 1 : -1;
+    return pushing !== (run.ports[port].expect === 'out') ? 1 : -1;
   });
 }
 
-function stateAsWritten({ network, prepared, factor }: System): FlowState {
-  const drives = drivesOf(network.chip);
+function stateAsWritten({ run, prepared, factor }: System): FlowState {
+  const drives = drivesOf(run);
   const kinds = kindsOf(drives);
   const same = kinds.every((kind, port) => kind === factor.kinds[port]);
   return flowStateOf(same ? factor : factorFlow(prepared, kinds), drives);
@@ -420,24 +420,23 @@ function foundTarget(
   solution: Solution,
 ): FoundTarget {
   const response = responseOf(system, target, i, solution);
-  const { chip } = system.network;
   return {
     wanted: target,
     reached: targetValue(target.measure, response.observed.at),
     response,
     portPressurePa: solution.state.portPressure[target.port],
     range: rangeOf(target, way, response),
-    reach: pumpReach(response, pumpLimitValues(foundPumpLimits(chip, target.entry.by))),
-    given: chip.ports[target.port].condition,
+    reach: pumpReach(response, pumpLimitValues(foundPumpLimits(system.run, target.entry.by))),
+    given: system.run.ports[target.port].condition,
   };
 }
 
 function conditionsOf(
-  { chip }: Network,
+  { ports }: Run,
   wanted: readonly Wanted[],
   settings: Float64Array,
 ): readonly PortCondition[] {
-  const conditions = chip.ports.map(({ condition }) => condition);
+  const conditions = ports.map(({ condition }) => condition);
   wanted.forEach(({ port, drive }, i) => {
     conditions[port] =
       drive === 'pressure'

@@ -1,5 +1,5 @@
 import { acceptedName, madeUpNames } from '../chip/accept.ts';
-import type { Chip } from '../chip/types.ts';
+import type { Chip, Run } from '../chip/types.ts';
 import { UNACCEPTABLE_RULES } from '../runsheet/measures.ts';
 import { isPattern } from '../runsheet/names.ts';
 
@@ -7,6 +7,12 @@ import { isPattern } from '../runsheet/names.ts';
 export interface KeptLimits {
   readonly min: number | null;
   readonly max: number | null;
+}
+
+/** What an `accept` entry is read from. */
+export interface AcceptingRun {
+  readonly network: { readonly chip: Pick<Chip, 'channels' | 'ports'> };
+  readonly run: Pick<Run, 'accept'>;
 }
 
 const NO_NAMES: ReadonlySet<string> = new Set();
@@ -17,7 +23,7 @@ const NO_NAMES: ReadonlySet<string> = new Set();
  * @param unit SI unit of the limits, as findings write it
  */
 export function acceptedLimits(
-  chip: Pick<Chip, 'accept' | 'channels' | 'ports'>,
+  { network: { chip }, run }: AcceptingRun,
   rule: string,
   names: readonly string[],
   unit: string,
@@ -26,7 +32,7 @@ export function acceptedLimits(
 ): KeptLimits {
   let [low, high] = [min, max];
   if (UNACCEPTABLE_RULES.has(rule)) return { min: low, max: high };
-  const entries = chip.accept.filter((entry) => entry.rule === rule);
+  const entries = run.accept.filter((entry) => entry.rule === rule);
   const madeUp = entries.some(({ at }) => isPattern(at)) ? madeUpNames(chip) : NO_NAMES;
   for (const entry of entries) {
     if (acceptedName(entry.at, names, madeUp) === null) continue;

@@ -30,12 +30,14 @@ interface Group {
   readonly most: number;
 }
 
-export function evennessOf({ chip, network, nominal }: SpreadModel): Evenness {
-  const groups = Object.entries(chip.sheet?.channels ?? {}).flatMap(([key, { even }]): Group[] => {
+export function evennessOf(model: SpreadModel): Evenness {
+  const { network, run, nominal } = model;
+  const { chip } = network;
+  const groups = Object.entries(run.sheet?.channels ?? {}).flatMap(([key, { even }]): Group[] => {
     if (even === null) return [];
     const members = membersOf(chip, key);
     const names = members.map((channel) => chip.channels[channel].name);
-    const { max } = acceptedLimits(chip, 'uneven-flow', names, '', null, even);
+    const { max } = acceptedLimits(model, 'uneven-flow', names, '', null, even);
     if (members.length < 2 || max === null) return [];
     return [{ key, lanes: members.map((channel) => [...channelReaches(network, channel)]), most: max }];
   });

@@ -1,3 +1,4 @@
+import { densityAt, viscosityAt } from '../chip/fluid.ts';
 /**
  * First-order spread (JCGM 100:2008, 5.1.2): u²(y) = Σ_k (∂y/∂x_k)² u²(x_k) over independent x_k.
  * Derivatives are exact: of flows and pressures by the adjoint network (solve/sensitivity.ts), of duct resistance, shear and peak
@@ -149,15 +150,15 @@ interface LogDerivatives {
   readonly density: Float64Array;
 }
 
-function logDerivatives({ chip, variables, sections }: SpreadModel): LogDerivatives {
-  const { fluid } = chip;
+function logDerivatives({ run, variables, sections }: SpreadModel): LogDerivatives {
+  const { fluid } = run;
   const viscosity = new Float64Array(variables.length);
   const density = new Float64Array(variables.length);
   variables.forEach((variable, k) => {
     if (variable.kind === 'viscosity') viscosity[k] = shareOf(variable, 1, fluid.viscosityPaS);
     if (variable.kind !== 'temperature') return;
-    viscosity[k] = slopeAt(fluid.viscosityAt, fluid.temperatureK) / fluid.viscosityPaS;
-    if (fluid.densityAt !== undefined) density[k] = slopeAt(fluid.densityAt, fluid.temperatureK);
+    viscosity[k] = slopeAt((kelvin) => viscosityAt(fluid, kelvin), fluid.temperatureK) / fluid.viscosityPaS;
+    density[k] = slopeAt((kelvin) => densityAt(fluid, kelvin), fluid.temperatureK);
   });
   const ofSection = sections.section.map((section): SectionLog[] => {
     const { drawnWidthM, ductWidthM, depthM, profile, maskVariable, ownVariable } = section;
@@ -200,7 +201,7 @@ type GradientRow = (gradient: Gradient) => Float64Array;
 
 /** From a gradient by resistances, pressures and injections to one by x: the chain rule, all edges summed by section first. */
 function gradientRows(model: SpreadModel, logs: LogDerivatives): GradientRow {
-  const { chip, network, variables, drives, sections, factor, balancedBy, holder, nominalState } = model;
+  const { network, run, variables, drives, sections, factor, balancedBy, holder, nominalState } = model;
   const { reachCount, reachChannel } = network;
   const { driveNode, tubingEdge } = factor.prepared;
   const { resistance } = factor.graphFactor;
@@ -231,7 +232,7 @@ function gradientRows(model: SpreadModel, logs: LogDerivatives): GradientRow {
       }
     }
     for (let k = 0; k < row.length; k++) row[k] += whole * logs.viscosity[k];
-    for (let p = 0; p < chip.ports.length; p++) {
+    for (let p = 0; p < run.ports.length; p++) {
       const edge = tubingEdge[p];
       if (edge < 0 || Number.isNaN(gradient.resistance[edge])) continue;
       for (const { variable, byX } of tubing[p]) row[variable] += gradient.resistance[edge] * byX;
@@ -258,7 +259,7 @@ function gradientRows(model: SpreadModel, logs: LogDerivatives): GradientRow {
         if (follower >= 0) row[k] -= known(gradient.injection[driveNode[follower]]) * size;
       }
     });
-    chip.ports.forEach(({ condition }, p) => {
+    run.ports.forEach(({ condition }, p) => {
       const node = driveNode[p];
       if (condition.kind !== 'head' || holder[p] !== p) return;
       const byDensity = known(gradient.pressure[node]) * GRAVITY_M_S2 * condition.headM;
@@ -275,15 +276,15 @@ function gradientRows(model: SpreadModel, logs: LogDerivatives): GradientRow {
 
 /** ∂R/∂x of each port's tubing. */
 function tubingDerivatives(
-  { chip, variables }: SpreadModel,
+  { run, variables }: SpreadModel,
   logs: LogDerivatives,
 ): readonly (readonly { readonly variable: number; readonly byX: number }[])[] {
-  const { fluid } = chip;
-  return chip.ports.map(({ tubing }) =>
+  const { fluid } = run;
+  return run.ports.map(({ tubing }) =>
     variables.flatMap((variable, k) => {
       let byX = 0;
       for (const { boreM, lengthM, temperatureK } of tubing) {
-        const viscosityPaS = temperatureK === null ? fluid.viscosityPaS : fluid.viscosityAt(temperatureK);
+        const viscosityPaS = temperatureK === null ? fluid.viscosityPaS : viscosityAt(fluid, temperatureK);
         const R = tubeResistance(boreM, lengthM, viscosityPaS);
         if (variable.kind === 'bore') byX -= (4 * R * sizeOf(variable, 1, boreM)) / boreM;
         // a piece with a temperature of its own keeps it

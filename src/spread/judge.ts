@@ -1,4 +1,5 @@
 import { isAbove } from '../findings/rule.ts';
+import { reachName } from '../network/names.ts';
 import { reynoldsNumber } from '../physics/reynolds.ts';
 import { acceptedLimits } from './accepted.ts';
 import { type EvenGroup, evennessOf } from './evenness.ts';
@@ -96,7 +97,7 @@ function regrouping(
     for (const { channel, members, reaches } of watched) {
       if (reaches.every((reach) => flow[reach] * nominal.reachFlow[reach] > 0)) continue;
       kept ??= new Map();
-      const failed = timeOutputs(network, channel, flow).filter(
+      const failed = timeOutputs(model, channel, flow).filter(
         (output) => !keeps(output, outputValue(output, model, state)),
       );
       for (const i of members)
@@ -121,11 +122,12 @@ function isStill({ nominal }: SpreadModel, { subject }: Output): boolean {
 }
 
 function laminarityOf(model: SpreadModel): (state: ChipState) => boolean {
-  const { network, chip } = model;
+  const { network, run } = model;
+  const { chip } = network;
   const { reachCount, reachChannel } = network;
   const limit = Float64Array.from({ length: reachCount }, (_, reach) => {
-    const names = [network.reachName(reach), chip.channels[reachChannel[reach]].name];
-    const { max } = acceptedLimits(chip, 'not-laminar', names, '', null, chip.limits.maxReynolds.value);
+    const names = [reachName(network, reach), chip.channels[reachChannel[reach]].name];
+    const { max } = acceptedLimits(model, 'not-laminar', names, '', null, run.limits.maxReynolds.value);
     return max ?? Number.POSITIVE_INFINITY;
   });
   return (state) => {

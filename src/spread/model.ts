@@ -4,13 +4,14 @@
  * factorisation into the same memory and one solve.
  */
 
-import type { Chip } from '../chip/types.ts';
-import type { Network } from '../network/types.ts';
+import { densityAt, viscosityAt } from '../chip/fluid.ts';
+import type { Chip, Fluid } from '../chip/types.ts';
 import { GRAVITY_M_S2 } from '../physics/constants.ts';
 import type { DuctForm } from '../physics/duct.ts';
 import { type Profile, sectionForm } from '../physics/section.ts';
 import { tubeResistance } from '../physics/tube.ts';
 import { drivesOf, type PortDrive } from '../solve/drives.ts';
+import type { RunNetwork } from '../solve/flow-network.ts';
 import {
   type FlowFactor,
   factorFlow,
@@ -36,9 +37,7 @@ export interface ChipState {
   readonly injection: Float64Array;
 }
 
-export interface SpreadModel {
-  readonly chip: Chip;
-  readonly network: Network;
+export interface SpreadModel extends RunNetwork {
   readonly variables: readonly Variable[];
   readonly drives: readonly PortDrive[];
   readonly sections: Sections;
@@ -58,24 +57,23 @@ export interface SpreadModel {
  * @param pressureNodes nodes of the network whose pressure a gradient will be asked for
  */
 export function prepareModel(
-  network: Network,
+  { network, run }: RunNetwork,
   variables: readonly Variable[],
   pressureNodes: readonly number[],
 ): SpreadModel {
-  const { chip } = network;
-  const drives = drivesOf(chip);
+  const drives = drivesOf(run);
   const kinds = kindsOf(drives);
-  const factor = factorFlow(watching(network, kinds, pressureNodes), kinds);
+  const factor = factorFlow(watching({ network, run }, kinds, pressureNodes), kinds);
   const nominal = flowStateOf(factor, drives);
   const balancedBy = balancingPorts(factor, drives);
-  const sections = gatherSections(chip, variables);
+  const sections = gatherSections(network.chip, variables);
   const holder = holdersOf(factor.prepared.driveNode, drives);
-  const at = evaluator({ network, variables, drives, factor, balancedBy, sections, holder });
+  const at = evaluator({ network, run, variables, drives, factor, balancedBy, sections, holder });
   const nominalState = at(new Float64Array(variables.length));
   if (nominalState === null) throw new RangeError('the chip itself can not be computed');
   return {
-    chip,
     network,
+    run,
     variables,
     drives,
     sections,
@@ -90,15 +88,15 @@ export function prepareModel(
 
 /** A dead end has the pressure of the live node it hangs on, so that node is watched instead. */
 function watching(
-  network: Network,
+  { network, run }: RunNetwork,
   kinds: readonly PortDrive['kind'][],
   pressureNodes: readonly number[],
 ): FlowFactor['prepared'] {
-  const plain = prepareFlow(network);
+  const plain = prepareFlow(network, run);
   const { anchor } = factorFlow(plain, kinds).graphFactor.analysis;
   const watched = new Set<number>();
   for (const node of pressureNodes) if (anchor[node] >= 0) watched.add(anchor[node]);
-  return prepareFlow(network, { watchedNodes: [...watched].sort((a, b) => a - b) });
+  return prepareFlow(network, run, { watchedNodes: [...watched].sort((a, b) => a - b) });
 }
 
 /** In a part that only flows drive they must go on adding up: the largest one follows the others. */
@@ -175,13 +173,14 @@ function gatherSections({ channels }: Chip, variables: readonly Variable[]): Sec
 
 type Parts = Pick<
   SpreadModel,
-  'network' | 'variables' | 'drives' | 'factor' | 'balancedBy' | 'sections' | 'holder'
+  'network' | 'run' | 'variables' | 'drives' | 'factor' | 'balancedBy' | 'sections' | 'holder'
 >;
 
 function evaluator(parts: Parts): SpreadModel['at'] {
-  const { network, variables, drives, factor, balancedBy, sections, holder } = parts;
+  const { network, run, variables, drives, factor, balancedBy, sections, holder } = parts;
   const { chip, reachCount, reachChannel, reachDuctMm, portNode } = network;
-  const { fluid, channels, ports } = chip;
+  const { channels } = chip;
+  const { fluid, ports } = run;
   const { driveNode, tubingEdge, graph } = factor.prepared;
   const indexOf = (kind: Variable['kind']): number =>
     variables.findIndex((variable) => variable.kind === kind);
@@ -193,7 +192,7 @@ function evaluator(parts: Parts): SpreadModel['at'] {
   );
   const nominalLoad = loadOf(factor, drives);
   const pieceViscosity = ports.map(({ tubing }) =>
-    tubing.map(({ temperatureK }) => (temperatureK === null ? null : fluid.viscosityAt(temperatureK))),
+    tubing.map(({ temperatureK }) => (temperatureK === null ? null : viscosityAt(fluid, temperatureK))),
   );
 
   const sectionForm: (DuctForm | null)[] = sections.section.map(() => null);
@@ -214,7 +213,7 @@ function evaluator(parts: Parts): SpreadModel['at'] {
     for (let c = 0; c < form.length; c++) form[c] = sectionForm[sections.ofChannel[c]];
     const kelvin = fluid.temperatureK + (temperature < 0 ? 0 : x[temperature]);
     const thinning = viscosity < 0 ? 1 : 1 + shareOf(variables[viscosity], x[viscosity], fluid.viscosityPaS);
-    const found = temperature < 0 ? fluid : fluidAt(chip, kelvin);
+    const found = temperature < 0 ? fluid : fluidAt(fluid, kelvin);
     if (found === null || !(thinning > 0)) return null;
     const viscosityPaS = found.viscosityPaS * thinning;
     for (let r = 0; r < reachCount; r++) {
@@ -305,14 +304,14 @@ function formAt(
 const LEAST_OPENING = 1e-4;
 
 function fluidAt(
-  { fluid }: Chip,
+  fluid: Fluid,
   kelvin: number,
 ): { readonly viscosityPaS: number; readonly densityKgM3: number } | null {
   if (kelvin === fluid.temperatureK) return fluid;
   try {
     return {
-      viscosityPaS: fluid.viscosityAt(kelvin),
-      densityKgM3: fluid.densityAt?.(kelvin) ?? fluid.densityKgM3,
+      viscosityPaS: viscosityAt(fluid, kelvin),
+      densityKgM3: densityAt(fluid, kelvin),
     };
   } catch (error) {
     // the published data end somewhere: this x is outside what can be computed

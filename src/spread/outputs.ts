@@ -1,14 +1,15 @@
 import { refuseSeveral } from '../chip/targets.ts';
-import type { Chip } from '../chip/types.ts';
 import { InputError } from '../errors.ts';
 import { NEAR_VACUUM_PA } from '../findings/pressure.ts';
 import { isAbove, isBelow } from '../findings/rule.ts';
 import { findNodes } from '../network/find-node.ts';
+import { nodeName, reachName } from '../network/names.ts';
 import type { Network } from '../network/types.ts';
 import { floorShareInside, gradientOf, type ShearRange, sideShareInside } from '../physics/duct.ts';
 import { nearest } from '../runsheet/nearest.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { ChannelEntry, PumpLimitEntry, ShearWindow, TargetEntry } from '../runsheet/types.ts';
+import type { RunNetwork } from '../solve/flow-network.ts';
 import type { FlowState } from '../solve/types.ts';
 import { acceptedLimits, type KeptLimits } from './accepted.ts';
 import type { ChipState, SpreadModel } from './model.ts';
@@ -73,18 +74,17 @@ export interface Output {
  * What is followed: flow and pressure of every port, everything about every channel with a window, every target; each once.
  * @throws InputError for a target at a node that the network lacks
  */
-export function listOutputs(network: Network, nominal: FlowState): readonly Output[] {
+export function listOutputs(at: RunNetwork, nominal: FlowState): readonly Output[] {
   const outputs = new Map<string, Output>();
   const add = (output: Output): void => {
     const key = `${output.on} ${output.quantity} ${JSON.stringify(output.subject)}`;
     const known = outputs.get(key);
     outputs.set(key, known === undefined ? output : bothAsked(known, output));
   };
-  for (const output of portOutputs(network)) add(output);
-  for (const output of targetOutputs(network, nominal)) add(output);
-  network.chip.channels.forEach(({ settings }, channel) => {
-    if (settings !== null)
-      for (const output of windowOutputs(network, nominal, channel, settings)) add(output);
+  for (const output of portOutputs(at)) add(output);
+  for (const output of targetOutputs(at, nominal)) add(output);
+  at.run.channels.forEach((settings, channel) => {
+    if (settings !== null) for (const output of windowOutputs(at, nominal, channel, settings)) add(output);
   });
   return [...outputs.values()];
 }
@@ -101,11 +101,11 @@ function bothAsked(a: Output, b: Output): Output {
 }
 
 /** Nodes of the network whose pressure is an output. */
-export function pressureNodesOf(network: Network): readonly number[] {
-  const { targets } = network.chip.sheet ?? { targets: [] };
+export function pressureNodesOf(at: RunNetwork): readonly number[] {
+  const { targets } = at.run.sheet ?? { targets: [] };
   return [
-    ...network.portNode,
-    ...targets.flatMap((target) => (target.on === 'node' ? [nodeOf(network, target)] : [])),
+    ...at.network.portNode,
+    ...targets.flatMap((target) => (target.on === 'node' ? [nodeOf(at, target)] : [])),
   ];
 }
 
@@ -208,24 +208,26 @@ function known(nominal: number, value: number): number {
 
 const PLAIN = { min: null, max: null, hasWindow: false, isTarget: false } as const;
 
-function portOutputs({ chip }: Network): Output[] {
-  return chip.ports.flatMap(({ name, drawnName, condition, tubing }, port): Output[] => {
-    const pump = drawnName === null ? undefined : chip.sheet?.pumpLimits[drawnName];
+function portOutputs(at: RunNetwork): Output[] {
+  const { network, run } = at;
+  return network.chip.ports.flatMap(({ name, drawnName }, port): Output[] => {
+    const { condition, tubing } = run.ports[port];
+    const pump = drawnName === null ? undefined : run.sheet?.pumpLimits[drawnName];
     const isShut = condition.kind === 'sealed' || condition.kind === 'unset';
     const hasSupply = tubing.length > 0 && !isShut;
-    const pressure = (at: 'chip' | 'supply'): Output => {
-      const atPump = at === 'supply' || !hasSupply ? pump : undefined;
+    const pressure = (end: 'chip' | 'supply'): Output => {
+      const atPump = end === 'supply' || !hasSupply ? pump : undefined;
       return {
         ...PLAIN,
-        ...pressureLimits(chip, name, atPump),
+        ...pressureLimits(at, name, atPump),
         on: 'port',
         name,
-        quantity: at === 'chip' ? 'pressure' : 'supply_pressure',
+        quantity: end === 'chip' ? 'pressure' : 'supply_pressure',
         unit: 'Pa',
-        subject: { kind: 'port pressure', port, at },
+        subject: { kind: 'port pressure', port, at: end },
       };
     };
-    const mostFlow = acceptedLimits(chip, 'pump-limit', [name], 'm³/s', null, pump?.maxFlowM3s ?? null).max;
+    const mostFlow = acceptedLimits(at, 'pump-limit', [name], 'm³/s', null, pump?.maxFlowM3s ?? null).max;
     const flow: Output = {
       ...PLAIN,
       on: 'port',
@@ -241,13 +243,13 @@ function portOutputs({ chip }: Network): Output[] {
 }
 
 /** What the chip holds, and at the end where the pump is what the pump does. */
-function pressureLimits(chip: Chip, port: string, pump: PumpLimitEntry | undefined): KeptLimits {
-  const { maxPressurePa, minPressurePa } = chip.limits;
+function pressureLimits(at: RunNetwork, port: string, pump: PumpLimitEntry | undefined): KeptLimits {
+  const { maxPressurePa, minPressurePa } = at.run.limits;
   const least = Math.max(minPressurePa?.value ?? NEAR_VACUUM_PA, NEAR_VACUUM_PA);
-  const low = acceptedLimits(chip, 'under-pressure', [port], 'Pa', least, null).min;
-  const high = acceptedLimits(chip, 'over-pressure', [port], 'Pa', null, maxPressurePa?.value ?? null).max;
+  const low = acceptedLimits(at, 'under-pressure', [port], 'Pa', least, null).min;
+  const high = acceptedLimits(at, 'over-pressure', [port], 'Pa', null, maxPressurePa?.value ?? null).max;
   const [pumpLow, pumpHigh] = [pump?.minPressurePa ?? null, pump?.maxPressurePa ?? null];
-  const atPump = acceptedLimits(chip, 'pump-limit', [port], 'Pa', pumpLow, pumpHigh);
+  const atPump = acceptedLimits(at, 'pump-limit', [port], 'Pa', pumpLow, pumpHigh);
   return { min: tighter(low, atPump.min, Math.max), max: tighter(high, atPump.max, Math.min) };
 }
 
@@ -262,49 +264,42 @@ function tighter(
 /* ---------- channels with a window ---------- */
 
 function windowOutputs(
-  network: Network,
+  at: RunNetwork,
   nominal: FlowState,
   channel: number,
   settings: ChannelEntry,
 ): Output[] {
   const { wallShear, residenceTime, flow, walls } = settings;
   if (wallShear === null && residenceTime === null && flow === null) return [];
-  const { chip } = network;
+  const { network } = at;
   const reaches = [...channelReaches(network, channel)];
-  const { name: channelName } = chip.channels[channel];
+  const { name: channelName } = network.chip.channels[channel];
   const outputs: Output[] = [];
   for (const reach of reaches) {
-    const names = [network.reachName(reach), channelName];
-    const flowLimits = acceptedLimits(
-      chip,
-      'flow-window',
-      names,
-      'm³/s',
-      flow?.min ?? null,
-      flow?.max ?? null,
-    );
+    const names = [reachName(network, reach), channelName];
+    const flowLimits = acceptedLimits(at, 'flow-window', names, 'm³/s', flow?.min ?? null, flow?.max ?? null);
     outputs.push({
       ...reachFlowOutput(network, nominal, reach),
       ...flowLimits,
       hasWindow: flow !== null,
     });
     for (const wall of walls === 'all' ? (['floor', 'side'] as const) : (['floor'] as const))
-      outputs.push(...shearOutputs(network, reach, wall, wallShear, names));
+      outputs.push(...shearOutputs(at, reach, wall, wallShear, names));
   }
-  outputs.push(...timeOutputs(network, channel, nominal.reachFlow));
+  outputs.push(...timeOutputs(at, channel, nominal.reachFlow));
   return outputs;
 }
 
 /** Times through the reaches that fluid passes one after the other under these flows, with what the channel's window asks of them. */
-export function timeOutputs(network: Network, channel: number, reachFlow: Float64Array): Output[] {
-  const { chip } = network;
-  const { name, settings } = chip.channels[channel];
-  const window = settings?.residenceTime ?? null;
+export function timeOutputs(at: RunNetwork, channel: number, reachFlow: Float64Array): Output[] {
+  const { network, run } = at;
+  const { name } = network.chip.channels[channel];
+  const window = run.channels[channel]?.residenceTime ?? null;
   const reaches = [...channelReaches(network, channel)];
   return passagesOf(network, reaches, reachFlow).flatMap((passage): Output[] => {
-    const names = [...passage.map(network.reachName), name];
+    const names = [...passage.map((r) => reachName(network, r)), name];
     const { min, max } = acceptedLimits(
-      chip,
+      at,
       'residence-window',
       names,
       's',
@@ -319,16 +314,16 @@ export function timeOutputs(network: Network, channel: number, reachFlow: Float6
 
 /** Without `over` the mean must reach the least and the peak must not pass the most; with it the share between them counts. */
 function shearOutputs(
-  network: Network,
+  at: RunNetwork,
   reach: number,
   wall: Wall,
   window: ShearWindow | null,
   names: readonly string[],
 ): Output[] {
-  const { chip } = network;
+  const { network } = at;
   const whole = window !== null && window.over === null ? window : null;
   const { min, max } = acceptedLimits(
-    chip,
+    at,
     'shear-window',
     names,
     'Pa',
@@ -345,10 +340,10 @@ function shearOutputs(
     outputs.push({
       ...PLAIN,
       on: 'reach',
-      name: network.reachName(reach),
+      name: reachName(network, reach),
       quantity: `${wall}_share_inside_window`,
       unit: '',
-      min: acceptedLimits(chip, 'shear-window', names, '', window.over, null).min,
+      min: acceptedLimits(at, 'shear-window', names, '', window.over, null).min,
       hasWindow: true,
       subject: { kind: 'share inside', reach, wall, range },
     });
@@ -361,7 +356,7 @@ function reachFlowOutput(network: Network, nominal: FlowState, reach: number): O
   return {
     ...PLAIN,
     on: 'reach',
-    name: network.reachName(reach),
+    name: reachName(network, reach),
     quantity: 'flow',
     unit: 'm³/s',
     subject: { kind: 'reach flow', reach, sign, asked: 'size' },
@@ -372,7 +367,7 @@ function shearOutput(network: Network, reach: number, wall: Wall, at: 'mean' | '
   return {
     ...PLAIN,
     on: 'reach',
-    name: network.reachName(reach),
+    name: reachName(network, reach),
     quantity: `wall_shear_${wall}_${at}`,
     unit: 'Pa',
     subject: { kind: 'shear', reach, wall, at },
@@ -385,7 +380,7 @@ function timeOutput(network: Network, reaches: readonly number[], at: 'mean' | '
   return {
     ...PLAIN,
     on: isOne ? 'reach' : 'channel',
-    name: isOne ? network.reachName(first) : network.chip.channels[network.reachChannel[first]].name,
+    name: isOne ? reachName(network, first) : network.chip.channels[network.reachChannel[first]].name,
     quantity: at === 'mean' ? 'residence_time' : 'fastest_time',
     unit: 's',
     subject: { kind: 'time', reaches, at },
@@ -394,13 +389,14 @@ function timeOutput(network: Network, reaches: readonly number[], at: 'mean' | '
 
 /* ---------- targets ---------- */
 
-function targetOutputs(network: Network, nominal: FlowState): Output[] {
+function targetOutputs(at: RunNetwork, nominal: FlowState): Output[] {
+  const { network, run } = at;
   const { chip } = network;
-  return (chip.sheet?.targets ?? []).flatMap((target): Output[] => {
+  return (run.sheet?.targets ?? []).flatMap((target): Output[] => {
     switch (target.on) {
       case 'port': {
         const port = chip.ports.findIndex(({ drawnName }) => drawnName === target.name);
-        const wanted = portOutputs(network).filter(
+        const wanted = portOutputs(at).filter(
           ({ subject, quantity }) =>
             'port' in subject &&
             subject.port === port &&
@@ -409,12 +405,12 @@ function targetOutputs(network: Network, nominal: FlowState): Output[] {
         return wanted.map((output) => ({ ...output, ...askedByTarget(target) }));
       }
       case 'node': {
-        const node = nodeOf(network, target);
+        const node = nodeOf(at, target);
         return [
           {
             ...PLAIN,
             on: 'node',
-            name: network.nodeName(node),
+            name: nodeName(network, node),
             quantity: 'pressure',
             unit: 'Pa',
             ...askedByTarget(target),
@@ -423,7 +419,7 @@ function targetOutputs(network: Network, nominal: FlowState): Output[] {
         ];
       }
       case 'channel':
-        return targetReaches(network, target).map((reach) => ({
+        return targetReaches(at, target).map((reach) => ({
           ...reachTarget(network, nominal, reach, target),
           ...askedByTarget(target),
         }));
@@ -454,7 +450,7 @@ function reachTarget(network: Network, nominal: FlowState, reach: number, target
       return {
         ...PLAIN,
         on: 'reach',
-        name: network.reachName(reach),
+        name: reachName(network, reach),
         quantity: 'velocity',
         unit: 'm/s',
         subject: { kind: 'velocity', reach },
@@ -467,30 +463,44 @@ function reachTarget(network: Network, nominal: FlowState, reach: number, target
 }
 
 /** The reach named, else every reach of the channel. */
-function targetReaches(network: Network, target: TargetEntry): number[] {
+function targetReaches(at: RunNetwork, target: TargetEntry): number[] {
+  const { network } = at;
   const { chip } = network;
   const reaches = chip.channels.flatMap(({ drawnName }, channel) =>
     drawnName === target.name ? [...channelReaches(network, channel)] : [],
   );
   if (target.reach === null) return reaches;
-  const named = reaches.filter((reach) => network.reachName(reach) === target.reach);
+  const named = reaches.filter((reach) => reachName(network, reach) === target.reach);
   if (named.length === 0)
-    refuseTarget(network, target, 'reach', target.reach, reaches.map(network.reachName));
+    refuseTarget(
+      at,
+      target,
+      'reach',
+      target.reach,
+      reaches.map((r) => reachName(network, r)),
+    );
   return named;
 }
 
-function nodeOf(network: Network, target: TargetEntry): number {
+function nodeOf(at: RunNetwork, target: TargetEntry): number {
+  const { network } = at;
   const found = findNodes(network, target.name);
   if (found.length === 1) return found[0];
-  const { sheet } = network.chip;
+  const { sheet } = at.run;
   if (sheet !== null && found.length > 1)
-    refuseSeveral(sheet, ['targets', target.index, 'node'], target.name, 'node', found.map(network.nodeName));
-  const names = Array.from({ length: network.nodeCount }, (_, node) => network.nodeName(node));
-  return refuseTarget(network, target, 'node', target.name, names);
+    refuseSeveral(
+      sheet,
+      ['targets', target.index, 'node'],
+      target.name,
+      'node',
+      found.map((n) => nodeName(network, n)),
+    );
+  const names = Array.from({ length: network.nodeCount }, (_, node) => nodeName(network, node));
+  return refuseTarget(at, target, 'node', target.name, names);
 }
 
 function refuseTarget(
-  { chip }: Network,
+  { network, run }: RunNetwork,
   { line }: TargetEntry,
   what: string,
   name: string,
@@ -500,7 +510,7 @@ function refuseTarget(
   const hint =
     near === null ? `its ${what}s are ${candidates.slice(0, 8).join(', ')}` : `did you mean ${quote(near)}?`;
   throw new InputError(
-    `${chip.sheet?.file ?? chip.file}:${line}`,
+    `${run.sheet?.file ?? network.chip.file}:${line}`,
     `targets: the network has no ${what} ${quote(name)} there; ${hint}`,
   );
 }

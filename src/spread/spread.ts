@@ -2,8 +2,9 @@
  * Network × tolerances → Spread, in two ways that check each other: first order with exact derivatives, and a seeded
  * low-discrepancy sample of the whole nonlinear model.
  */
-import type { Network } from '../network/types.ts';
+
 import type { Tolerances } from '../runsheet/types.ts';
+import type { RunNetwork } from '../solve/flow-network.ts';
 import { worstCorner } from './corner.ts';
 import { type Derivatives, derivativesOf, firstOrder } from './first-order.ts';
 import { type Judge, makeJudge } from './judge.ts';
@@ -37,14 +38,14 @@ const MOST_NUMBERS = 3e7;
  * Errors: InputError for a target at a node or reach that the network lacks.
  */
 export async function spreadOf(
-  network: Network,
+  at: RunNetwork,
   tolerances: Tolerances,
   { draws: asked, seed }: SpreadOptions,
   pace: Pace = NEVER,
 ): Promise<Spread> {
-  const { causes, variables, idle } = listVariables(network.chip, tolerances);
-  const model = prepareModel(network, variables, pressureNodesOf(network));
-  const outputs = listOutputs(network, model.nominal);
+  const { causes, variables, idle } = listVariables(at, tolerances);
+  const model = prepareModel(at, variables, pressureNodesOf(at));
+  const outputs = listOutputs(at, model.nominal);
   const followed = Math.min(outputs.length, Math.max(16, Math.floor(MOST_NUMBERS / Math.max(1, asked))));
   const nominal = Float64Array.from(outputs, (output) => outputValue(output, model, model.nominalState));
   const judge = makeJudge(model, outputs, nominal);
@@ -84,8 +85,8 @@ export async function spreadOf(
 }
 
 /** Why no tolerance moves anything on this chip, one reason each; null when one does. Computes nothing. */
-export function whyNoSpread(network: Network, tolerances: Tolerances): readonly string[] | null {
-  const { variables, idle } = listVariables(network.chip, tolerances);
+export function whyNoSpread(at: RunNetwork, tolerances: Tolerances): readonly string[] | null {
+  const { variables, idle } = listVariables(at, tolerances);
   return variables.length > 0 ? null : idle;
 }
 

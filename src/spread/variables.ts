@@ -1,6 +1,8 @@
-import type { Chip, Port } from '../chip/types.ts';
+import { feelsTemperature } from '../chip/fluid.ts';
+import type { Chip, PortRun } from '../chip/types.ts';
 import { layerKey } from '../runsheet/names.ts';
 import type { Tolerance, Tolerances } from '../runsheet/types.ts';
+import type { RunNetwork } from '../solve/flow-network.ts';
 import { normalQuantile } from './normal-quantile.ts';
 
 /** One entry of the run sheet's tolerances at work: what the shares of variance are counted by. */
@@ -57,7 +59,8 @@ export function deviate({ value, distribution }: Tolerance, u: number): number {
  * the bore is common to all tubing; port pressures and flows are independent between ports.
  * A pressure tolerance for all ports is for those given a pressure or a head; an open well is meant only when it is named.
  */
-export function listVariables(chip: Chip, tolerances: Tolerances): Variables {
+export function listVariables({ network, run }: RunNetwork, tolerances: Tolerances): Variables {
+  const { chip } = network;
   const causes: Cause[] = [];
   const variables: Variable[] = [];
   const idle: string[] = [];
@@ -87,17 +90,17 @@ export function listVariables(chip: Chip, tolerances: Tolerances): Variables {
     add('width_own', 'own width of each channel', widthOwn, own, noChannel);
   }
   if (temperature !== null) {
-    const moves = chip.fluid.densityAt !== undefined;
+    const moves = feelsTemperature(run.fluid);
     const why = 'the fluid is given by its viscosity and density';
     add('temperature', 'temperature of the chip', temperature, moves ? [{ kind: 'temperature' }] : [], why);
   }
   if (viscosity !== null) add('viscosity', 'viscosity of the fluid', viscosity, [{ kind: 'viscosity' }], '');
   if (bore !== null) {
-    const hasTubing = chip.ports.some(({ tubing }) => tubing.length > 0);
+    const hasTubing = run.ports.some(({ tubing }) => tubing.length > 0);
     add('bore', 'bore of the tubing', bore, hasTubing ? [{ kind: 'bore' }] : [], 'no port has tubing');
   }
-  addPorts(chip, 'pressure', tolerances.pressure, tolerances.pressureByPort, add, idle);
-  addPorts(chip, 'flow', tolerances.flow, tolerances.flowByPort, add, idle);
+  addPorts({ network, run }, 'pressure', tolerances.pressure, tolerances.pressureByPort, add, idle);
+  addPorts({ network, run }, 'flow', tolerances.flow, tolerances.flowByPort, add, idle);
   return { causes, variables, idle };
 }
 
@@ -134,7 +137,7 @@ function addDepths(
 }
 
 function addPorts(
-  chip: Chip,
+  { network, run }: RunNetwork,
   quantity: 'pressure' | 'flow',
   all: Tolerance | null,
   byPort: Readonly<Record<string, Tolerance>>,
@@ -142,8 +145,9 @@ function addPorts(
   idle: string[],
 ): void {
   let used = false;
-  chip.ports.forEach((port, p) => {
-    const own = port.drawnName === null ? undefined : byPort[port.drawnName];
+  network.chip.ports.forEach(({ name, drawnName }, p) => {
+    const port = run.ports[p];
+    const own = drawnName === null ? undefined : byPort[drawnName];
     const isMeant = quantity === 'flow' ? isFlow(port) : isPressure(port, own !== undefined);
     const tolerance = own ?? (isMeant ? all : null);
     if (tolerance === null) return;
@@ -151,21 +155,21 @@ function addPorts(
     const kinds: readonly VariableKind[] = moves ? [{ kind: quantity, port: p }] : [];
     const why = isMeant ? 'a share of nought is nought' : `the port is ${conditionText(port)}`;
     if (own !== undefined || moves)
-      add(`${quantity}:${port.name}`, `${quantity} at ${port.name}`, tolerance, kinds, why);
+      add(`${quantity}:${name}`, `${quantity} at ${name}`, tolerance, kinds, why);
     used ||= moves;
   });
   if (all !== null && !used) idle.push(`${quantity}: no port is given a ${quantity}`);
 }
 
-function isFlow({ condition }: Port): boolean {
+function isFlow({ condition }: PortRun): boolean {
   return condition.kind === 'flow';
 }
 
-function isPressure({ condition }: Port, isNamed: boolean): boolean {
+function isPressure({ condition }: PortRun, isNamed: boolean): boolean {
   return condition.kind === 'pressure' || condition.kind === 'head' || (isNamed && condition.kind === 'open');
 }
 
-function isNought({ condition }: Port): boolean {
+function isNought({ condition }: PortRun): boolean {
   switch (condition.kind) {
     case 'pressure':
       return condition.pressurePa === 0;
@@ -178,7 +182,7 @@ function isNought({ condition }: Port): boolean {
   }
 }
 
-function conditionText({ condition }: Port): string {
+function conditionText({ condition }: PortRun): string {
   switch (condition.kind) {
     case 'pressure':
     case 'flow':

@@ -1,4 +1,5 @@
 import { InputError } from '../errors.ts';
+import { utf8Length } from '../utf8-length.ts';
 import { makeCascade } from './cascade.ts';
 import { MAX_SVG_BYTES } from './limits.ts';
 import { multiply } from './matrix.ts';
@@ -18,7 +19,7 @@ import { walkDrawing } from './walk.ts';
  * SVG, a file that is cut off, a value that cannot be read, or a limit.
  */
 export function readSvg(text: string, where: string): SvgDrawing {
-  if (text.length > MAX_SVG_BYTES || Buffer.byteLength(text) > MAX_SVG_BYTES) {
+  if (text.length > MAX_SVG_BYTES || utf8Length(text) > MAX_SVG_BYTES) {
     throw new InputError(
       where,
       `the SVG is over ${MAX_SVG_BYTES / 1e6} MB (the limit); split or simplify the drawing`,

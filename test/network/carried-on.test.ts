@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { buildNetwork } from '../../src/network/build.ts';
+import { reachName } from '../../src/network/names.ts';
 import { randomFrom } from '../solve/graphs.ts';
 import { type ChannelSpec, chipOf, type PortSpec } from './chip-of.ts';
 
@@ -8,7 +9,7 @@ import { type ChannelSpec, chipOf, type PortSpec } from './chip-of.ts';
 function ducts(channels: readonly ChannelSpec[], ports: readonly PortSpec[] = []): Record<string, number> {
   const network = buildNetwork(chipOf(channels, ports));
   return Object.fromEntries(
-    Array.from({ length: network.reachCount }, (_, r) => [network.reachName(r), network.reachDuctMm[r]]),
+    Array.from({ length: network.reachCount }, (_, r) => [reachName(network, r), network.reachDuctMm[r]]),
   );
 }
 

@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { buildNetwork } from '../../src/network/build.ts';
+import { nodeName, reachName } from '../../src/network/names.ts';
 import { type Network, NODE_KINDS } from '../../src/network/types.ts';
 import { type ChannelSpec, chipOf, type PortSpec } from './chip-of.ts';
 
@@ -12,16 +13,16 @@ function summary(network: Network) {
   const reaches: Record<string, { from: string; to: string; drawn: number; duct: number; segments: number }> =
     {};
   for (let r = 0; r < network.reachCount; r++) {
-    reaches[network.reachName(r)] = {
-      from: network.nodeName(network.reachFrom[r]),
-      to: network.nodeName(network.reachTo[r]),
+    reaches[reachName(network, r)] = {
+      from: nodeName(network, network.reachFrom[r]),
+      to: nodeName(network, network.reachTo[r]),
       drawn: network.reachDrawnMm[r],
       duct: network.reachDuctMm[r],
       segments: network.firstSegment[r + 1] - network.firstSegment[r],
     };
   }
   const nodes = Array.from({ length: network.nodeCount }, (_, n) => [
-    network.nodeName(n),
+    nodeName(network, n),
     NODE_KINDS[network.nodeKind[n]],
   ]);
   return { reaches, nodes: Object.fromEntries(nodes) as Record<string, string>, network };

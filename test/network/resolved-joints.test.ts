@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import type { Chip } from '../../src/chip/types.ts';
 import { buildNetwork } from '../../src/network/build.ts';
+import { reachName } from '../../src/network/names.ts';
 import { bendK, crossK, mitreK, stepK, teeEqualK, teeIntoWideK } from '../../src/physics/joints.ts';
 import { type ChannelSpec, chipOf, type PortSpec } from './chip-of.ts';
 
@@ -15,7 +16,7 @@ function resolved(channels: readonly ChannelSpec[], ports: readonly PortSpec[] =
   const drawn: Record<string, number> = {};
   const bound: Record<string, number> = {};
   for (let r = 0; r < network.reachCount; r++) {
-    const name = network.reachName(r);
+    const name = reachName(network, r);
     joint[name] = network.reachJointMm[r];
     duct[name] = network.reachDuctMm[r];
     drawn[name] = network.reachDrawnMm[r];

@@ -61,7 +61,7 @@ function commandsFor(svg: string, sheet: string | null): readonly (readonly stri
     ['check', svg, '--out', 'check', ...all],
     ['check', svg, '--out', 'flow', '--formats', 'svg', '--colour', 'flow', '--quiet'],
     ['check', svg, '--json', '--detail', 'ports'],
-    ['draft', svg],
+    ['draft', svg, '--run', '-'],
     ...(sheet !== null && /^targets:/m.test(sheet) ? [['pump', svg, '--out', 'pump', ...all]] : []),
     ...(sheet !== null && /tolerances:/.test(sheet)
       ? [['spread', svg, '--out', 'spread', '--draws', '200', '--samples', 'samples.csv', ...all]]

@@ -1,5 +1,6 @@
 import { type Analysis, analyse } from '../../src/analyse.ts';
 import { layOut } from '../../src/layout/layout.ts';
+import { reachName } from '../../src/network/names.ts';
 import { parseRunSheet } from '../../src/runsheet/parse.ts';
 import { readSvg } from '../../src/svg/read.ts';
 
@@ -23,7 +24,7 @@ export function portFlows({ chip, flow }: Analysis): Record<string, number> {
 export function reachValues({ network, flow }: Analysis): Record<string, readonly [number, number, number]> {
   const values: Record<string, readonly [number, number, number]> = {};
   for (let r = 0; r < network.reachCount; r++) {
-    values[network.reachName(r)] = [flow.reachFlow[r], network.reachDuctMm[r], flow.reachPressureDrop[r]];
+    values[reachName(network, r)] = [flow.reachFlow[r], network.reachDuctMm[r], flow.reachPressureDrop[r]];
   }
   return values;
 }

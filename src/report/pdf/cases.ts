@@ -1,3 +1,4 @@
+import { reachName } from '../../network/names.ts';
 import { formatNumber, type Show } from '../../runsheet/shown.ts';
 import { cleanText } from '../plain-text.ts';
 import { hasWindow, outsideWindows, windowTexts } from '../reach-values.ts';
@@ -31,7 +32,7 @@ export function writeCases(contexts: readonly PageContext[]): void {
   paper.newPage('portrait');
   const section = paper.section();
   paper.heading(section, 1, 'Cases compared');
-  const { sheet } = one.network.chip;
+  const { sheet } = one.run;
   const drawing = [sheet?.title ?? '', sheet === null ? '' : drawingText(sheet.drawing)];
   paper.paragraph(
     section,
@@ -175,9 +176,9 @@ function windowedReaches(cases: readonly ReportedCase[]): {
   readonly more: number;
 } {
   const names = new Set<string>();
-  for (const { network } of cases) {
+  for (const { network, run } of cases) {
     for (let reach = 0; reach < network.reachCount; reach++) {
-      if (hasWindow(network.chip.channels[network.reachChannel[reach]])) names.add(network.reachName(reach));
+      if (hasWindow(run.channels[network.reachChannel[reach]])) names.add(reachName(network, reach));
     }
   }
   return { names: [...names].slice(0, MOST_REACHES), more: Math.max(0, names.size - MOST_REACHES) };
@@ -191,18 +192,23 @@ interface ReachText {
 
 /** By name: what flows, and what the windows say to it. */
 function reachTexts(one: ReportedCase, wanted: ReadonlySet<string>): ReadonlyMap<string, ReachText> {
-  const { network, part, show } = one;
+  const { network, run, part, show } = one;
   const outside = outsideWindows(one);
   const texts = new Map<string, ReachText>();
   for (let reach = 0; reach < network.reachCount; reach++) {
-    const name = network.reachName(reach);
+    const name = reachName(network, reach);
     if (!wanted.has(name)) continue;
-    const channel = network.chip.channels[network.reachChannel[reach]];
-    const windows = windowTexts(channel, show).join('; ');
+    const channel = network.reachChannel[reach];
+    const windows = windowTexts(run.channels[channel], show).join('; ');
     texts.set(name, {
       values: valuesText(part.reaches.at(reach), show),
       windows,
-      verdict: windows === '' ? 'no window' : outside(channel.name, name) ? 'OUTSIDE' : 'inside',
+      verdict:
+        windows === ''
+          ? 'no window'
+          : outside(network.chip.channels[channel].name, name)
+            ? 'OUTSIDE'
+            : 'inside',
     });
   }
   return texts;

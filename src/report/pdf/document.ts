@@ -32,7 +32,7 @@ export interface PdfOptions {
  */
 export function writePdf(report: Report, options: PdfOptions): Promise<Uint8Array> {
   const { result, cases } = report;
-  const { sheet } = cases[0].network.chip;
+  const { sheet } = cases[0].run;
   const creator = `${result.tool.name} ${result.tool.version}`;
   const title = sheet?.title ?? result.layout.file;
   const paper = new Paper({
@@ -78,7 +78,7 @@ function subjectOf(cases: Report['cases']): string {
 
 function headLine(report: Report, title: string): string {
   const { result, cases } = report;
-  const { sheet } = cases[0].network.chip;
+  const { sheet } = cases[0].run;
   const drawing = sheet === null ? '' : drawingText(sheet.drawing);
   const verdict = 'cases' in result ? casesLine(report) : verdictLine(result.verdict, result.counts);
   const settings = cases.some(({ pump }) => pump !== undefined) ? AT_FOUND_SETTINGS : '';

@@ -8,7 +8,7 @@ import {
   type Unit,
 } from '../../runsheet/shown.ts';
 import { cleanText } from '../plain-text.ts';
-import { hasWindow, outsideWindows, reachesThatMatter, windowTexts } from '../reach-values.ts';
+import { outsideWindows, reachesThatMatter, windowedChannels, windowTexts } from '../reach-values.ts';
 import { casesLeftOut } from '../report.ts';
 import type { PortRow, ReachRow } from '../result-rows.ts';
 import { plural, verdictCounts } from '../verdict-line.ts';
@@ -53,7 +53,7 @@ export function writeFrontPage(context: PageContext): void {
 }
 
 function writeVerdict({ paper, report, one }: PageContext, section: Element): void {
-  const { sheet } = one.network.chip;
+  const { sheet } = one.run;
   const { part } = one;
   const title = [
     sheet?.title ?? report.result.layout.file,
@@ -194,11 +194,11 @@ const REACHES_SHOWN = 14;
 function writeReachesThatMatter({ paper, one }: PageContext, section: Element, room: number): void {
   const count = Math.min(REACHES_SHOWN, Math.floor((room - 56) / 9.8));
   if (count < 2) return;
-  const { network, show } = one;
+  const { show } = one;
   const { rows, windows, of } = reachesThatMatter(one, count);
   if (rows.length === 0) return;
   const outside = outsideWindows(one);
-  const channels = new Map(network.chip.channels.filter(hasWindow).map((channel) => [channel.name, channel]));
+  const channels = windowedChannels(one);
   const unit = (shown: Shown, pick: (row: ReachRow) => number | null): Unit =>
     show.unit(shown, largestMagnitude(rows.map(pick)));
   const flow = unit('flow', (row) => row.flow_m3_s);
@@ -224,8 +224,7 @@ function writeReachesThatMatter({ paper, one }: PageContext, section: Element, r
       ...(windows ? [{ head: 'window', align: 'left', width: 'fit' } as const] : []),
     ],
     rows.map((row) => {
-      const channel = channels.get(row.channel);
-      const texts = channel === undefined ? [] : windowTexts(channel, show);
+      const texts = windowTexts(channels.get(row.channel) ?? null, show);
       const isOutside = outside(row.channel, row.name);
       return {
         kind: 'cells',

@@ -52,7 +52,7 @@ function reachToCheck(one: ReportedCase): Checked | null {
 
 function writePlates({ paper, one }: PageContext, section: Element, row: Checked): void {
   const { show } = one;
-  const { viscosityPaS } = one.network.chip.fluid;
+  const { viscosityPaS } = one.run.fluid;
   const flow = Math.abs(row.flow_m3_s);
   const [long, short] = row.width_m >= row.depth_m ? [row.width_m, row.depth_m] : [row.depth_m, row.width_m];
   const wall = row.width_m >= row.depth_m ? 'floor' : 'side';

@@ -1,4 +1,4 @@
-import type { Chip } from '../../chip/types.ts';
+import type { Chip, Run } from '../../chip/types.ts';
 import { unreadText } from '../../findings/words.ts';
 import { formatMm, formatNumber } from '../../runsheet/shown.ts';
 import { jointsText } from '../joints-text.ts';
@@ -21,7 +21,7 @@ export function inputFacts({ report, one, date }: PageContext): readonly (readon
         ? 'none: geometry rules only, defaults elsewhere'
         : `${run_sheet.file}, SHA-256 ${run_sheet.sha256}`,
     ],
-    ['fluid', fluidText(chip)],
+    ['fluid', fluidText(one.run)],
     ['depth', depthText(chip)],
     ['chip size', sizeText(chip)],
     [
@@ -35,7 +35,7 @@ export function inputFacts({ report, one, date }: PageContext): readonly (readon
   ];
 }
 
-function fluidText({ fluid }: Chip): string {
+function fluidText({ fluid }: Run): string {
   const celsius = formatNumber(Number((fluid.temperatureK - 273.15).toFixed(6)));
   return `${fluid.name} at ${celsius} °C: viscosity ${formatNumber(fluid.viscosityPaS * 1000)} mPa s, density ${formatNumber(fluid.densityKgM3)} kg/m³ (${fluid.source})`;
 }

@@ -1,4 +1,5 @@
-import type { Chip, Sourced } from '../../chip/types.ts';
+import { LIMIT_SLACK, minWallM } from '../../chip/limits.ts';
+import type { Chip, Limits, Sourced } from '../../chip/types.ts';
 import { formatMm, formatNumber } from '../../runsheet/shown.ts';
 import { jointsText } from '../joints-text.ts';
 import type { ReportedCase } from '../report.ts';
@@ -28,7 +29,7 @@ export function writeModel({ paper, one }: PageContext): void {
   );
   writeJoints(paper, section, one);
   writeLayers(paper, section, chip);
-  writeLimits(paper, section, chip);
+  writeLimits(paper, section, chip, one.run.limits);
 }
 
 function modelTexts(chip: Chip): readonly string[] {
@@ -191,7 +192,8 @@ function writeLayers(paper: Paper, section: Element, chip: Chip): void {
   );
 }
 
-function writeLimits(paper: Paper, section: Element, { limits, process, layers }: Chip): void {
+function writeLimits(paper: Paper, section: Element, chip: Chip, limits: Limits): void {
+  const { process, layers } = chip;
   paper.heading(section, 2, 'Limits');
   paper.paragraph(
     section,
@@ -209,7 +211,7 @@ function writeLimits(paper: Paper, section: Element, { limits, process, layers }
   const rows: TableRow[] = [
     limitRow('narrowest channel', limits.minWidthM, micrometres),
     ...depths.map((depthM) =>
-      limitRow(`thinnest wall, depth ${micrometres(depthM)}`, limits.minWallM(depthM), micrometres),
+      limitRow(`thinnest wall, depth ${micrometres(depthM)}`, minWallM(chip, depthM), micrometres),
     ),
     limitRow('width over depth', limits.maxWidthToDepth, (ratio) => `at most ${formatNumber(ratio)}`),
     limitRow('depth over width', limits.maxDepthToWidth, (ratio) => `at most ${formatNumber(ratio)}`),
@@ -241,7 +243,11 @@ function writeLimits(paper: Paper, section: Element, { limits, process, layers }
     ],
     rows,
   );
-  paper.paragraph(section, "The relative slack of every comparison is 1e-9, in the drawing's favour.", BODY);
+  paper.paragraph(
+    section,
+    `The relative slack of every comparison is ${LIMIT_SLACK.toExponential()}, in the drawing's favour.`,
+    BODY,
+  );
 }
 
 function limitRow<T>(what: string, limit: Sourced<T> | null, text: (value: T) => string): TableRow {

@@ -69,7 +69,7 @@ export function writePump({ paper, one }: PageContext): void {
   if (more > 0) paper.paragraph(section, `… and ${more} more targets, in the tables above.`, SMALL);
 
   function toCurve(target: FoundTarget): PumpCurve {
-    return pumpCurve(network, target, show);
+    return pumpCurve(one, target, show);
   }
 }
 

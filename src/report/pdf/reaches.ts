@@ -1,4 +1,3 @@
-import type { Channel } from '../../chip/types.ts';
 import {
   formatNumber,
   formatShare,
@@ -7,6 +6,7 @@ import {
   type Shown,
   type Unit,
 } from '../../runsheet/shown.ts';
+import type { ChannelEntry } from '../../runsheet/types.ts';
 import { hasWindow, outsideWindows, windowTexts } from '../reach-values.ts';
 import type { ReportedCase } from '../report.ts';
 import type { ReachRow } from '../result-rows.ts';
@@ -143,16 +143,16 @@ function tableRows(
   rows: readonly ReachRow[],
   numbers: readonly NumberColumn[],
 ): TableRow[] {
-  const { network, show } = one;
+  const { network, run, show } = one;
   const outside = outsideWindows(one);
   const table: TableRow[] = [];
   let current = -1;
   rows.forEach((row, i) => {
     const reach = order[i];
     const index = network.reachChannel[reach];
-    const channel = network.chip.channels[index];
-    if (index !== current && (hasWindow(channel) || network.channelReachCount[reach] > 1)) {
-      table.push({ kind: 'group', text: groupText(channel, row, show) });
+    const settings = run.channels[index];
+    if (index !== current && (hasWindow(settings) || network.channelReachCount[reach] > 1)) {
+      table.push({ kind: 'group', text: groupText(settings, row, show) });
     } else if (
       index !== current &&
       table.length > 0 &&
@@ -177,14 +177,12 @@ function tableRows(
 }
 
 /** Whether the row before stands under a group line: then the next channel needs one too, not to be taken for its member. */
-function groupOf({ network }: ReportedCase, order: Int32Array, i: number): boolean {
+function groupOf({ network, run }: ReportedCase, order: Int32Array, i: number): boolean {
   const reach = order[i];
-  return (
-    hasWindow(network.chip.channels[network.reachChannel[reach]]) || network.channelReachCount[reach] > 1
-  );
+  return hasWindow(run.channels[network.reachChannel[reach]]) || network.channelReachCount[reach] > 1;
 }
 
-function groupText(channel: Channel, row: ReachRow, show: Show): string {
-  const windows = windowTexts(channel, show);
+function groupText(settings: ChannelEntry | null, row: ReachRow, show: Show): string {
+  const windows = windowTexts(settings, show);
   return [`${row.channel}, layer ${row.layer === '' ? '(none)' : row.layer}`, ...windows].join('; ');
 }

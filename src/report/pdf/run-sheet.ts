@@ -3,7 +3,7 @@ import { lineHeight } from './paper.ts';
 
 /** The run sheet in full, with line numbers, as it was read. */
 export function writeRunSheet({ paper, report, one }: PageContext): void {
-  const { sheet } = one.network.chip;
+  const { sheet } = one.run;
   const section = paper.start('portrait', 200);
   paper.heading(section, 1, 'Run sheet');
   if (sheet === null) {
