@@ -117,6 +117,16 @@ export function pieceBoxes(
   return box;
 }
 
+/** The pieces that come near a piece, in the order of their pairs. */
+export function piecesNear({ pairA, pairB, firstPair, pairOf }: Nearness, piece: number): number[] {
+  const found: number[] = [];
+  for (let k = firstPair[piece]; k < firstPair[piece + 1]; k++) {
+    const pair = pairOf[k];
+    found.push(pairA[pair] === piece ? pairB[pair] : pairA[pair]);
+  }
+  return found;
+}
+
 function areConsecutive(pieces: Pieces, i: number, j: number): boolean {
   const c = pieces.centreline[i];
   if (c !== pieces.centreline[j]) return false;

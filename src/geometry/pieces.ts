@@ -153,6 +153,12 @@ export function pieceAt(pieces: Pieces, centreline: number, s: number): number {
   return low;
 }
 
+/** The piece at an end: end 2c is the start of centreline c, 2c + 1 its last point. */
+export function endPiece(pieces: Pieces, end: number): number {
+  const c = end >> 1;
+  return (end & 1) === 0 ? pieces.firstPiece[c] : pieces.firstPiece[c + 1] - 1;
+}
+
 /** True when the piece's first (second) point is an inner vertex of its centreline, not one of its ends. */
 export function startsAtVertex(pieces: Pieces, piece: number): boolean {
   const c = pieces.centreline[piece];
