@@ -1,5 +1,5 @@
-import type { Groups } from '../geometry/groups.ts';
 import { type Pieces, pieceAt } from '../geometry/pieces.ts';
+import type { Groups } from '../groups.ts';
 import type { Arcs } from './arcs.ts';
 import { channelOf, firstStep } from './arms.ts';
 import type { Draft } from './draft.ts';

@@ -1,6 +1,6 @@
-import { type Groups, itemsOf, toGroups } from '../geometry/groups.ts';
 import type { Nearness } from '../geometry/near.ts';
 import type { Pieces } from '../geometry/pieces.ts';
+import { type Groups, itemsOf, toGroups } from '../groups.ts';
 import { type CentrelineEnds, END_FREE, NodeUnion } from './draft.ts';
 
 /**

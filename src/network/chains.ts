@@ -1,4 +1,4 @@
-import { type Groups, toGroups } from '../geometry/groups.ts';
+import type { Groups } from '../groups.ts';
 
 /**
  * Lengths of duct, arcs or reaches, and how they go on in each other. Side 2a is where length a begins, 2a + 1 where it ends.
@@ -11,16 +11,6 @@ export interface Chains {
   readonly side: Int32Array;
   /** 1 where the last length goes on in the first: no node interrupts it. */
   readonly isLoop: Uint8Array;
-}
-
-/** The sides that come to each node, given the nodes at which the lengths begin and end. */
-export function sidesByNode(nodeCount: number, from: Int32Array, to: Int32Array): Groups {
-  const nodeOf = new Int32Array(2 * from.length);
-  for (let a = 0; a < from.length; a++) {
-    nodeOf[2 * a] = from[a];
-    nodeOf[2 * a + 1] = to[a];
-  }
-  return toGroups(nodeCount, nodeOf);
 }
 
 /**

@@ -1,5 +1,5 @@
-import { itemsOf } from '../geometry/groups.ts';
 import type { PlaceOn } from '../geometry/on-piece.ts';
+import { itemsOf } from '../groups.ts';
 import { type Bundles, bundleAt, findBundles } from './bundles.ts';
 import { candidatesOf, carryOn } from './carry-on.ts';
 import { type Draft, drawnPosition, END_FREE, END_JOINED, endPosition, ROUNDING_MM } from './draft.ts';

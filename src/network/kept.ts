@@ -1,4 +1,4 @@
-import { type Groups, toGroups } from '../geometry/groups.ts';
+import { type Groups, toGroups } from '../groups.ts';
 import { type Draft, endPosition } from './draft.ts';
 import type { Stops } from './stops.ts';
 

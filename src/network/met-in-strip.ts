@@ -1,7 +1,7 @@
-import { type Groups, itemsOf, toGroups } from '../geometry/groups.ts';
 import { piecesNear } from '../geometry/near.ts';
 import { distanceToPiece } from '../geometry/on-piece.ts';
 import { endPiece } from '../geometry/pieces.ts';
+import { type Groups, itemsOf, toGroups } from '../groups.ts';
 import { type Draft, drawnPosition, endPosition } from './draft.ts';
 import { Strips } from './strips.ts';
 

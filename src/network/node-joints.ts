@@ -1,7 +1,8 @@
+import { sidesByNode } from '../groups.ts';
 import type { Arcs } from './arcs.ts';
 import { ArmLengths } from './arm-lengths.ts';
 import { type Arm, angleBetween, channelOf, toArm } from './arms.ts';
-import { passages, sidesByNode } from './chains.ts';
+import { passages } from './chains.ts';
 import { type Computed, computedJoint, isOfOneDepth, isSquareTee } from './computed-joints.ts';
 import { type Draft, pointAt } from './draft.ts';
 import { isEqualDuct } from './equal-ducts.ts';

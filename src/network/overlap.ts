@@ -1,6 +1,6 @@
-import { type Groups, itemsOf } from '../geometry/groups.ts';
 import { distanceToPiece } from '../geometry/on-piece.ts';
 import { endPiece, pieceAt } from '../geometry/pieces.ts';
+import { type Groups, itemsOf } from '../groups.ts';
 import { type Bundles, bundleAt } from './bundles.ts';
 import { type Draft, drawnPosition, endPosition, pointAt, ROUNDING_MM } from './draft.ts';
 import { isEqualSize } from './equal-ducts.ts';

@@ -1,7 +1,7 @@
-import { itemsOf } from '../geometry/groups.ts';
 import { piecesNear } from '../geometry/near.ts';
 import { endPiece } from '../geometry/pieces.ts';
 import { isInPieceStrip } from '../geometry/strip.ts';
+import { itemsOf } from '../groups.ts';
 import type { Bundles } from './bundles.ts';
 import { type Draft, END_FREE, END_JOINED, endPosition, isFarBack } from './draft.ts';
 import { type Kept, stopsByNode, wholeCentrelines } from './kept.ts';

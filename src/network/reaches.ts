@@ -1,5 +1,6 @@
+import { sidesByNode } from '../groups.ts';
 import { type Arcs, NO_LENGTH_MM } from './arcs.ts';
-import { passages, sidesByNode, toChains } from './chains.ts';
+import { passages, toChains } from './chains.ts';
 import type { Draft } from './draft.ts';
 import { type Segments, SegmentWriter } from './segments.ts';
 import { countedLength, type Trims } from './trims.ts';

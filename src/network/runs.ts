@@ -1,4 +1,5 @@
-import { type Chains, passages, sidesByNode, toChains } from './chains.ts';
+import { sidesByNode } from '../groups.ts';
+import { type Chains, passages, toChains } from './chains.ts';
 import type { Draft } from './draft.ts';
 import { isEqualDuct } from './equal-ducts.ts';
 import type { Reaches } from './reaches.ts';

@@ -1,4 +1,4 @@
-import { firstOfGroups, itemsOf, toGroups } from '../geometry/groups.ts';
+import { firstOfGroups, itemsOf, toGroups } from '../groups.ts';
 import { type Draft, END_JOINED, endPosition } from './draft.ts';
 
 /**

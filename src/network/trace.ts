@@ -1,5 +1,5 @@
-import type { Groups } from '../geometry/groups.ts';
 import type { StripEnds } from '../geometry/strip.ts';
+import type { Groups } from '../groups.ts';
 import type { Arcs } from './arcs.ts';
 import type { Bundles } from './bundles.ts';
 import { type Draft, END_FREE, END_IN_PORT } from './draft.ts';

@@ -1,6 +1,6 @@
-import { type Groups, itemsOf } from '../geometry/groups.ts';
 import { piecesNear } from '../geometry/near.ts';
 import { endPiece, type Pieces, pieceAt } from '../geometry/pieces.ts';
+import { type Groups, itemsOf } from '../groups.ts';
 import type { Draft } from './draft.ts';
 import { isEqualDuct, isEqualSize } from './equal-ducts.ts';
 import type { Kept } from './kept.ts';

@@ -1,4 +1,4 @@
-import { firstOfGroups } from '../geometry/groups.ts';
+import { firstOfGroups } from '../groups.ts';
 
 /** At a node rule 5 is applied as written; not at all (lengths run to the meeting point); or up to the wider strip's wall. */
 export const TRIM_BY_RULE = 0;

@@ -1,5 +1,5 @@
-import type { Groups } from '../geometry/groups.ts';
 import type { StripEnds } from '../geometry/strip.ts';
+import type { Groups } from '../groups.ts';
 import { type Draft, NodeUnion } from './draft.ts';
 import { isEqualDuct } from './equal-ducts.ts';
 import { endAtStop, type Kept } from './kept.ts';

@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { passages, sidesByNode, toChains } from '../../src/network/chains.ts';
+import { sidesByNode } from '../../src/groups.ts';
+import { passages, toChains } from '../../src/network/chains.ts';
 
 /** The chains of lengths given as [node where it begins, node where it ends]; node 0 is a port. */
 function chainsOf(
