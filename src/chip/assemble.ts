@@ -92,6 +92,7 @@ export function assembleChip({ layout, sheet: written, file, layoutSha256 }: Chi
     planes: finder.planes,
     layers: withDrawnDepths(finder.layers, channels),
     channels,
+    sections: drawn.sections,
     ports: ports.ports,
     obstacles,
     edge: edge === null ? null : inMm(edge, unitMm),

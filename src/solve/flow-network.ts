@@ -9,6 +9,7 @@ export type FlowNetwork = Pick<
   readonly chip: {
     readonly fluid: Chip['fluid'];
     readonly ports: readonly Pick<Port, 'condition' | 'tubing'>[];
-    readonly channels: readonly Pick<Channel, 'ductWidthMm' | 'depthMm'>[];
+    readonly channels: readonly Pick<Channel, 'section'>[];
+    readonly sections: Chip['sections'];
   };
 };

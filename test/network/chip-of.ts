@@ -1,3 +1,4 @@
+import { SectionList } from '../../src/chip/sections.ts';
 import type { Channel, Chip, ChipLayer, Port } from '../../src/chip/types.ts';
 
 export interface ChannelSpec {
@@ -29,6 +30,7 @@ export function chipOf(channels: readonly ChannelSpec[], ports: readonly PortSpe
     depthOrigin: 'run sheet',
     profile: 'rectangle',
   }));
+  const sections = new SectionList();
   return {
     file: 'test.svg',
     layoutSha256: '0'.repeat(64),
@@ -38,7 +40,8 @@ export function chipOf(channels: readonly ChannelSpec[], ports: readonly PortSpe
     heightMm: null,
     planes: ['chip', 'top'],
     layers,
-    channels: channels.map((spec, ordinal) => toChannel(spec, ordinal, depths)),
+    channels: channels.map((spec, ordinal) => toChannel(spec, ordinal, depths, sections)),
+    sections: sections.forms,
     ports: ports.map(toPort),
     edge: null,
     sizeMm: null,
@@ -77,7 +80,12 @@ export function chipOf(channels: readonly ChannelSpec[], ports: readonly PortSpe
   };
 }
 
-function toChannel(spec: ChannelSpec, ordinal: number, depths: readonly string[]): Channel {
+function toChannel(
+  spec: ChannelSpec,
+  ordinal: number,
+  depths: readonly string[],
+  sections: SectionList,
+): Channel {
   return {
     name: spec.name,
     drawnName: spec.name,
@@ -90,6 +98,7 @@ function toChannel(spec: ChannelSpec, ordinal: number, depths: readonly string[]
     depthMm: spec.depthMm ?? 0.1,
     depthOrigin: 'run sheet',
     profile: 'rectangle',
+    section: sections.indexOf('rectangle', spec.widthMm, spec.depthMm ?? 0.1),
     linecap: 'butt',
     centrelines: spec.lines.map((line, k) => ({
       points: Float64Array.from(line),

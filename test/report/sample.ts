@@ -1,7 +1,9 @@
+import { SectionList } from '../../src/chip/sections.ts';
 import type { Channel, Chip, Fluid, Port } from '../../src/chip/types.ts';
 import type { Finding, FindingReport } from '../../src/findings/types.ts';
 import type { Network, NetworkTrace } from '../../src/network/types.ts';
-import { resistancePerLength } from '../../src/physics/duct.ts';
+import { ductForm } from '../../src/physics/duct.ts';
+import { resistancePerLength } from '../../src/physics/duct-state.ts';
 import { waterDensity, waterViscosity } from '../../src/physics/fluid.ts';
 import { tubeResistance } from '../../src/physics/tube.ts';
 import type { ResultInput } from '../../src/report/result.ts';
@@ -173,6 +175,7 @@ const WINDOW: ChannelEntry = {
 };
 
 function sampleChip(names: SampleNames, { show = {}, bare = false }: SampleOptions): Chip {
+  const sections = new SectionList();
   const channel = (
     ordinal: number,
     name: string,
@@ -191,6 +194,7 @@ function sampleChip(names: SampleNames, { show = {}, bare = false }: SampleOptio
     depthMm: DEPTH_MM,
     depthOrigin: 'run sheet',
     profile: 'rectangle',
+    section: sections.indexOf('rectangle', widthMm, DEPTH_MM),
     linecap: 'butt',
     centrelines: [
       {
@@ -242,6 +246,7 @@ function sampleChip(names: SampleNames, { show = {}, bare = false }: SampleOptio
       channel(3, 'stub', 0.2, [38, 6, 38, 2], null),
       channel(4, 'outlet', 0.3, [60, 13, 70, 13], null),
     ],
+    sections: sections.forms,
     ports: [
       port(5, names.feed, 6, 13, { kind: 'pressure', pressurePa: 1_000 }, tubing),
       port(6, 'waste', 70, 13, { kind: 'open' }),
@@ -446,9 +451,8 @@ function sampleFlow(network: Network, feedPa: number): FlowState {
     REACHES,
     (_, reach) =>
       resistancePerLength(
-        chip.channels[network.reachChannel[reach]].ductWidthMm / 1000,
-        DEPTH_MM / 1000,
-        fluid.viscosityPaS,
+        ductForm(chip.channels[network.reachChannel[reach]].ductWidthMm / 1000, DEPTH_MM / 1000),
+        { viscosityPaS: fluid.viscosityPaS },
       ) *
       (network.reachDuctMm[reach] / 1000),
   );

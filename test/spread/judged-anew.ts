@@ -1,3 +1,4 @@
+import { SectionList } from '../../src/chip/sections.ts';
 import type { Chip } from '../../src/chip/types.ts';
 import { findAll } from '../../src/findings/check.ts';
 import { RULES } from '../../src/findings/rules.ts';
@@ -63,6 +64,7 @@ function variedChip(chip: Chip, variables: readonly Variable[], x: readonly numb
       if (!isMeant(variable)) return total;
       return total + (variable.tolerance.kind === 'relative' ? x[k] * value : x[k]);
     }, 0);
+  const sections = new SectionList();
   const channels = chip.channels.map((channel, c) => {
     const depthMm =
       channel.depthMm +
@@ -79,7 +81,8 @@ function variedChip(chip: Chip, variables: readonly Variable[], x: readonly numb
           channel.drawnWidthMm / 1000,
         );
     const ductWidthMm = drawnWidthMm + (channel.profile === 'isotropic' ? (Math.PI * depthMm) / 2 : 0);
-    return { ...channel, depthMm, drawnWidthMm, ductWidthMm };
+    const section = sections.indexOf(channel.profile, ductWidthMm, depthMm);
+    return { ...channel, depthMm, drawnWidthMm, ductWidthMm, section };
   });
   const kelvin = chip.fluid.temperatureK + sum(({ kind }) => kind === 'temperature', 0);
   const thinning = 1 + sum(({ kind }) => kind === 'viscosity', 1);
@@ -109,5 +112,5 @@ function variedChip(chip: Chip, variables: readonly Variable[], x: readonly numb
     }
     return { ...port, tubing };
   });
-  return { ...chip, channels, fluid, ports };
+  return { ...chip, channels, sections: sections.forms, fluid, ports };
 }
