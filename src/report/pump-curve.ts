@@ -1,4 +1,4 @@
-import { sectionForm } from '../physics/section.ts';
+import { flowForShear, type ShearAt } from '../physics/duct-state.ts';
 import { formatNumber, type Show, type Unit } from '../runsheet/shown.ts';
 import type { PumpLimitEntry, Window } from '../runsheet/types.ts';
 import type { RunNetwork } from '../solve/flow-network.ts';
@@ -143,7 +143,7 @@ function windowsOf(
   { network, run }: RunNetwork,
   { wanted }: FoundTarget,
 ): { readonly window: Window; readonly text: string }[] {
-  const { entry, observed } = wanted;
+  const { entry, measure, observed } = wanted;
   const windows: { window: Window; text: string }[] = [];
   if (typeof entry.value !== 'number') windows.push({ window: entry.value, text: 'target' });
   if (observed.kind !== 'reach') return windows;
@@ -151,24 +151,19 @@ function windowsOf(
   const settings = run.channels[network.reachChannel[observed.reach]];
   if (settings === null) return windows;
   const text = `window of ${channel.name}`;
-  if (entry.quantity === 'wall_shear' && settings.wallShear !== null) {
+  if (measure.kind === 'shear' && settings.wallShear !== null) {
     // the least is asked of the mean, the most of the peak: both are shown as what the target would then read
-    const form = sectionForm(channel.profile, channel.ductWidthMm / 1000, channel.depthMm / 1000);
-    const own = entry.at === 'mean' ? form.floorMean : form.floorPeak;
+    const shown = (at: ShearAt, shearPa: number | null): number | null =>
+      shearPa === null
+        ? null
+        : targetValue(measure, flowForShear(measure.form, 'floor', at, shearPa, measure.fluid));
     const { min, max } = settings.wallShear;
-    windows.push({
-      window: {
-        min: min === null ? null : (min * own) / form.floorMean,
-        max: max === null ? null : (max * own) / form.floorPeak,
-      },
-      text,
-    });
+    windows.push({ window: { min: shown('mean', min), max: shown('peak', max) }, text });
   }
-  if (entry.quantity === 'residence_time' && settings.residenceTime !== null) {
+  if (measure.kind === 'time' && settings.residenceTime !== null) {
     // the least is asked of the fastest fluid
-    const form = sectionForm(channel.profile, channel.ductWidthMm / 1000, channel.depthMm / 1000);
     const { min, max } = settings.residenceTime;
-    windows.push({ window: { min: min === null ? null : min * form.peakOverMean, max }, text });
+    windows.push({ window: { min: min === null ? null : min * measure.form.peakOverMean, max }, text });
   }
   if (entry.quantity === 'flow' && settings.flow !== null) windows.push({ window: settings.flow, text });
   return windows;

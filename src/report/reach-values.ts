@@ -1,10 +1,12 @@
+import { roomLengthM } from '../network/lengths.ts';
 import { reachName } from '../network/names.ts';
+import { residenceTime, volumeOf } from '../physics/duct-state.ts';
 import { formatNumber, formatShare, type Show, type Shown } from '../runsheet/shown.ts';
 import type { ChannelEntry, Window } from '../runsheet/types.ts';
 import type { RunNetwork } from '../solve/flow-network.ts';
+import { reachState } from '../solve/reach-state.ts';
 import type { ReportedCase } from './report.ts';
 import type { ReachRow } from './result-rows.ts';
-import { sectionCache } from './section-values.ts';
 
 /** What a map can be coloured by. */
 export type MapQuantity = 'shear' | 'pressure' | 'flow' | 'residence';
@@ -13,33 +15,24 @@ export type MapQuantity = 'shear' | 'pressure' | 'flow' | 'residence';
  * One value per reach (SI; NaN where there is none), without making rows: mean floor shear, magnitude of the flow,
  * residence time, or the mean of the two end pressures.
  */
-export function reachValues({ network, run, flow }: ReportedCase, quantity: MapQuantity): Float64Array {
-  const { chip } = network;
-  const sectionOf = sectionCache();
+export function reachValues(one: ReportedCase, quantity: MapQuantity): Float64Array {
+  const { network, flow } = one;
   const values = new Float64Array(network.reachCount);
-  for (let reach = 0; reach < network.reachCount; reach++) {
-    values[reach] = valueAlong(reach);
-  }
+  for (let reach = 0; reach < network.reachCount; reach++) values[reach] = valueAlong(reach);
   return values;
 
   function valueAlong(reach: number): number {
-    const flowM3s = Math.abs(flow.reachFlow[reach]);
     switch (quantity) {
       case 'pressure':
         return (flow.nodePressure[network.reachFrom[reach]] + flow.nodePressure[network.reachTo[reach]]) / 2;
       case 'flow':
-        return flowM3s;
-      case 'shear': {
-        const { profile, ductWidthMm, depthMm } = chip.channels[network.reachChannel[reach]];
-        return sectionOf(profile, ductWidthMm / 1000, depthMm / 1000).floorMeanPa(
-          flowM3s,
-          run.fluid.viscosityPaS,
-        );
-      }
+        return Math.abs(flow.reachFlow[reach]);
+      case 'shear':
+        return reachState(one, reach)?.floorMeanPa ?? Number.NaN;
       case 'residence': {
-        const { ductWidthMm, depthMm } = chip.channels[network.reachChannel[reach]];
-        const lengthMm = network.reachDuctMm[reach] - network.reachJointMm[reach];
-        const seconds = (ductWidthMm * depthMm * lengthMm * 1e-9) / flowM3s;
+        const state = reachState(one, reach);
+        if (state === null) return Number.NaN;
+        const seconds = residenceTime(volumeOf(state.form, roomLengthM(network, reach)), state.flowM3s);
         return Number.isFinite(seconds) ? seconds : Number.NaN;
       }
       default:
