@@ -1,4 +1,4 @@
-import { sectionForm } from '../../physics/section.ts';
+import { channelForm } from '../../chip/sections.ts';
 import { formatNumber, type Show } from '../../runsheet/shown.ts';
 import { reachesThatMatter } from '../reach-values.ts';
 import type { ReportedCase } from '../report.ts';
@@ -145,10 +145,14 @@ function writeBalance({ paper, one }: PageContext, section: Element): void {
 }
 
 function writeDepth({ paper, one }: PageContext, section: Element, row: Checked): void {
-  const channel = one.network.chip.channels.find(({ name }) => name === row.channel);
-  const { byDepth, byWidth } = sectionForm(channel?.profile ?? 'rectangle', row.width_m, row.depth_m);
+  const { chip } = one.network;
+  const channel = chip.channels.findIndex(({ name }) => name === row.channel);
+  const form = channelForm(chip, channel);
+  if (form === null) return;
+  const { byDepth, byWidth } = form;
   // isotropic: width = mask + π·depth/2, so the width grows with the depth
-  const follow = channel?.profile === 'isotropic' ? ((Math.PI / 2) * row.depth_m) / row.width_m : 0;
+  const follow =
+    chip.channels[channel].profile === 'isotropic' ? ((Math.PI / 2) * row.depth_m) / row.width_m : 0;
   const resistance = byDepth.resistance + follow * byWidth.resistance;
   const shearPerGradient = byDepth.floorMean + follow * byWidth.floorMean;
   const area = 1 + follow;
