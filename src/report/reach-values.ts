@@ -1,9 +1,9 @@
 import type { Channel } from '../chip/types.ts';
-import { formatNumber, formatShare, type Show, type Shown } from '../runsheet/shown.ts';
-import type { Window } from '../runsheet/types.ts';
+import { formatShare, type Show } from '../runsheet/shown.ts';
 import type { ReportedCase } from './report.ts';
 import type { ReachRow } from './result-rows.ts';
 import { sectionCache } from './section-values.ts';
+import { windowText } from './window-text.ts';
 
 /** What a map can be coloured by. */
 export type MapQuantity = 'shear' | 'pressure' | 'flow' | 'residence';
@@ -104,6 +104,8 @@ export function hasWindow({ settings }: Channel): boolean {
   );
 }
 
+const STYLE = { digits: 4, most: '≤', least: '≥' } as const;
+
 /** The windows of a channel as text: "shear 0.05 to 0.5 Pa over 80 %". */
 export function windowTexts({ settings }: Channel, show: Show): readonly string[] {
   if (settings === null) return [];
@@ -112,17 +114,10 @@ export function windowTexts({ settings }: Channel, show: Show): readonly string[
   if (wallShear !== null) {
     const over = wallShear.over === null ? '' : ` over ${formatShare(wallShear.over)}`;
     texts.push(
-      `shear ${rangeText('wall_shear', wallShear, show)}${over}${walls === 'all' ? ', all walls' : ''}`,
+      `shear ${windowText(show, 'wall_shear', wallShear, STYLE)}${over}${walls === 'all' ? ', all walls' : ''}`,
     );
   }
-  if (residenceTime !== null) texts.push(`time ${rangeText('residence_time', residenceTime, show)}`);
-  if (flow !== null) texts.push(`flow ${rangeText('flow', flow, show)}`);
+  if (residenceTime !== null) texts.push(`time ${windowText(show, 'residence_time', residenceTime, STYLE)}`);
+  if (flow !== null) texts.push(`flow ${windowText(show, 'flow', flow, STYLE)}`);
   return texts;
-}
-
-function rangeText(shown: Shown, { min, max }: Window, show: Show): string {
-  if (min === null) return `≤ ${show.text(shown, max)}`;
-  if (max === null) return `≥ ${show.text(shown, min)}`;
-  const unit = show.unit(shown, Math.max(Math.abs(min), Math.abs(max)));
-  return `${formatNumber(min / unit.si)} to ${formatNumber(max / unit.si)} ${unit.text}`;
 }

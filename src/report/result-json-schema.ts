@@ -6,7 +6,12 @@ import { resultSchema } from './result-schema.ts';
  * Used when the package is built; not needed at run time.
  */
 export function resultJsonSchema(): object {
-  const schema = toJsonSchema(resultSchema, { target: 'draft-2020-12', errorMode: 'throw' });
+  const schema = toJsonSchema(resultSchema, {
+    target: 'draft-2020-12',
+    errorMode: 'throw',
+    // kinds and heads are for people's tables
+    ignoreActions: ['metadata'],
+  });
   return {
     $schema: 'https://json-schema.org/draft/2020-12/schema',
     title: 'rillcheck result',

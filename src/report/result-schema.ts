@@ -1,9 +1,10 @@
 import * as v from 'valibot';
 import { RESULT_VERSION } from '../version.ts';
+import type { Quantity } from './quantities.ts';
 
 /**
- * The one typed description of the result that leaves the program as JSON and CSV: the TypeScript types (`result-rows.ts`),
- * the JSON Schema and the CSV columns all come from here. Keys carry their unit; a number that does not exist is null.
+ * The one typed description of the result: the TypeScript types (`result-rows.ts`), the JSON Schema, the CSV columns, and heads and
+ * units of tables for people all come from here. Keys carry their unit; a number that does not exist is null.
  */
 
 const text = v.string();
@@ -11,6 +12,11 @@ const count = (description: string) =>
   v.pipe(v.number(), v.integer(), v.minValue(0), v.description(description));
 const number = (description: string) => v.pipe(v.number(), v.description(description));
 const maybe = (description: string) => v.pipe(v.nullable(v.number()), v.description(description));
+/** A number that people read too: what it measures, and its head in tables. */
+const shown = (description: string, kind: Quantity['kind'], head: string) =>
+  v.pipe(v.number(), v.description(description), v.metadata({ kind, head }));
+const maybeShown = (description: string, kind: Quantity['kind'], head: string, second?: string) =>
+  v.pipe(v.nullable(v.number()), v.description(description), v.metadata({ kind, head, second }));
 
 export const toolSchema = v.strictObject({
   name: text,
@@ -58,15 +64,23 @@ export const countsSchema = v.strictObject({
 
 export const portSchema = v.strictObject({
   name: text,
-  x_mm: number('Centre, drawing coordinates in mm'),
-  y_mm: number('Centre, drawing coordinates in mm, y down'),
-  diameter_mm: number('Diameter of the hole'),
+  x_mm: shown('Centre, drawing coordinates in mm', 'drawn_mm', 'x in drawing'),
+  y_mm: shown('Centre, drawing coordinates in mm, y down', 'drawn_mm', 'y in drawing'),
+  diameter_mm: shown('Diameter of the hole', 'drawn_mm', 'diameter'),
   condition: v.picklist(['pressure', 'flow', 'head', 'open', 'sealed', 'unset']),
-  pressure_pa: maybe('Gauge pressure in the chip at the port'),
-  supply_pressure_pa: maybe('Gauge pressure at the far end of the tubing, or the port without tubing'),
-  flow_m3_s: maybe('Flow into the chip; negative leaves it'),
-  tubing_volume_m3: maybe('Volume of all tubing pieces; null without tubing'),
-  tubing_time_s: maybe('Tubing volume over flow; null without tubing or flow'),
+  pressure_pa: maybeShown('Gauge pressure in the chip at the port', 'pressure', 'in the chip'),
+  supply_pressure_pa: maybeShown(
+    'Gauge pressure at the far end of the tubing, or the port without tubing',
+    'pressure',
+    'at the supply',
+  ),
+  flow_m3_s: maybeShown('Flow into the chip; negative leaves it', 'flow', 'flow into chip'),
+  tubing_volume_m3: maybeShown('Volume of all tubing pieces; null without tubing', 'volume', 'tubing holds'),
+  tubing_time_s: maybeShown(
+    'Tubing volume over flow; null without tubing or flow',
+    'residence_time',
+    'time in tubing',
+  ),
   joint_flow_share: maybe('How far joints that were not resolved could move the flow, as a share of it'),
   joint_pressure_share: maybe('How far they could move the pressure in the chip, as a share of it'),
 });
@@ -85,45 +99,65 @@ export const reachSchema = v.strictObject({
   layer: v.pipe(v.nullable(text), v.description('null for a stroke in no layer')),
   from: v.pipe(text, v.description('Node at the start, in drawn direction')),
   to: v.pipe(text, v.description('Node at the end, in drawn direction')),
-  width_m: maybe('Width of the rectangular duct'),
-  depth_m: maybe('Depth of the rectangular duct'),
-  drawn_length_m: number('Centreline length between the nodes, wells left out'),
-  length_m: number('Duct length: what resists flow after the joining rules'),
-  joint_length_m: number('Signed length that resolved joints add, within length_m'),
-  resistance_pa_s_m3: maybe('Pressure drop per flow'),
-  flow_m3_s: maybe('Flow, positive from → to'),
-  pressure_drop_pa: maybe('Pressure at from minus pressure at to'),
-  mean_velocity_m_s: maybe('Flow over cross-section, magnitude'),
-  peak_velocity_m_s: maybe('Velocity on the axis, magnitude'),
-  reynolds: maybe('Reynolds number on the hydraulic diameter'),
+  width_m: maybeShown('Width of the rectangular duct', 'cross_length', 'width'),
+  depth_m: maybeShown('Depth of the rectangular duct', 'cross_length', 'depth'),
+  drawn_length_m: shown('Centreline length between the nodes, wells left out', 'length', 'drawn'),
+  length_m: shown('Duct length: what resists flow after the joining rules', 'length', 'duct'),
+  joint_length_m: shown('Signed length that resolved joints add, within length_m', 'length', 'joints'),
+  resistance_pa_s_m3: maybeShown('Pressure drop per flow', 'resistance', 'resistance'),
+  flow_m3_s: maybeShown('Flow, positive from → to', 'flow', 'flow'),
+  pressure_drop_pa: maybeShown('Pressure at from minus pressure at to', 'pressure', 'drop'),
+  mean_velocity_m_s: maybeShown('Flow over cross-section, magnitude', 'velocity', 'v mean'),
+  peak_velocity_m_s: maybeShown('Velocity on the axis, magnitude', 'velocity', 'v peak'),
+  reynolds: maybeShown('Reynolds number on the hydraulic diameter', 'number', 'Re'),
   dean: maybe('Dean number at the tightest bend; null on a straight reach'),
   entrance_length_m: maybe('Length over which the velocity profile develops'),
-  wall_shear_floor_mean_pa: maybe('Wall shear on the floor, mean over its width'),
-  wall_shear_floor_peak_pa: maybe('Wall shear on the floor, in its middle'),
-  wall_shear_side_mean_pa: maybe('Wall shear on a side, mean over its height'),
-  wall_shear_side_peak_pa: maybe('Wall shear on a side, in its middle'),
-  floor_share_inside_window: maybe(
-    'Share of the floor width whose shear lies in the wall_shear window; null without window',
+  wall_shear_floor_mean_pa: maybeShown(
+    'Wall shear on the floor, mean over its width',
+    'wall_shear',
+    'floor mean',
   ),
-  residence_time_s: maybe('Volume over flow'),
-  fastest_time_s: maybe('Length over peak velocity'),
+  wall_shear_floor_peak_pa: maybeShown('Wall shear on the floor, in its middle', 'wall_shear', 'floor peak'),
+  wall_shear_side_mean_pa: maybeShown(
+    'Wall shear on a side, mean over its height',
+    'wall_shear',
+    'side mean',
+  ),
+  wall_shear_side_peak_pa: maybeShown('Wall shear on a side, in its middle', 'wall_shear', 'side peak'),
+  floor_share_inside_window: maybeShown(
+    'Share of the floor width whose shear lies in the wall_shear window; null without window',
+    'share',
+    'floor in',
+    'window',
+  ),
+  residence_time_s: maybeShown('Volume over flow', 'residence_time', 'time mean'),
+  fastest_time_s: maybeShown('Length over peak velocity', 'residence_time', 'fastest'),
   volume_m3: maybe('Width × depth × length'),
-  joint_flow_share: maybe('How far joints that were not resolved could move the flow, as a share of it'),
+  joint_flow_share: maybeShown(
+    'How far joints that were not resolved could move the flow, as a share of it',
+    'bound',
+    'joints move',
+    'it by ±',
+  ),
 });
 
 export const segmentSchema = v.strictObject({
   name: text,
   reach: text,
-  x1_mm: number('Start, drawing coordinates in mm'),
-  y1_mm: number('Start, drawing coordinates in mm, y down'),
-  x2_mm: number('End, drawing coordinates in mm'),
-  y2_mm: number('End, drawing coordinates in mm, y down'),
-  length_m: number('Duct length'),
-  resistance_pa_s_m3: maybe('Pressure drop per flow'),
-  pressure_drop_pa: maybe('Pressure at the start minus pressure at the end'),
-  wall_shear_floor_mean_pa: maybe('Wall shear on the floor, mean over its width'),
-  wall_shear_floor_peak_pa: maybe('Wall shear on the floor, in its middle'),
-  residence_time_s: maybe('Volume over flow'),
+  x1_mm: shown('Start, drawing coordinates in mm', 'drawn_mm', 'x₁'),
+  y1_mm: shown('Start, drawing coordinates in mm, y down', 'drawn_mm', 'y₁'),
+  x2_mm: shown('End, drawing coordinates in mm', 'drawn_mm', 'x₂'),
+  y2_mm: shown('End, drawing coordinates in mm, y down', 'drawn_mm', 'y₂'),
+  length_m: shown('Duct length', 'length', 'length'),
+  resistance_pa_s_m3: maybeShown('Pressure drop per flow', 'resistance', 'resistance'),
+  pressure_drop_pa: maybeShown('Pressure at the start minus pressure at the end', 'pressure', 'drop'),
+  wall_shear_floor_mean_pa: maybeShown(
+    'Wall shear on the floor, mean over its width',
+    'wall_shear',
+    'floor mean',
+  ),
+  wall_shear_floor_peak_pa: maybeShown('Wall shear on the floor, in its middle', 'wall_shear', 'floor peak'),
+  residence_time_s: maybeShown('Volume over flow', 'residence_time', 'time'),
 });
 
 export const findingSchema = v.strictObject({
@@ -288,9 +322,24 @@ export const casesSchema = v.strictObject({
 export const resultSchema = v.union([singleSchema, casesSchema]);
 
 /** CSV columns, in the order of the JSON keys. */
-export const reachColumns = Object.keys(reachSchema.entries) as readonly (keyof v.InferOutput<
-  typeof reachSchema
->)[]; // the entries' own keys
-export const segmentColumns = Object.keys(segmentSchema.entries) as readonly (keyof v.InferOutput<
-  typeof segmentSchema
->)[]; // likewise
+export const reachColumns = keysOf(reachSchema.entries);
+export const segmentColumns = keysOf(segmentSchema.entries);
+
+function keysOf<Entries extends object>(entries: Entries): readonly (keyof Entries & string)[] {
+  return Object.keys(entries) as (keyof Entries & string)[]; // the entries' own keys
+}
+
+type ShownKey<Entries> = {
+  [Key in keyof Entries]: Entries[Key] extends {
+    readonly pipe: readonly [unknown, unknown, { readonly metadata: Quantity }];
+  }
+    ? Key
+    : never;
+}[keyof Entries];
+
+export const portQuantity = (key: ShownKey<typeof portSchema.entries>): Quantity =>
+  portSchema.entries[key].pipe[2].metadata;
+export const reachQuantity = (key: ShownKey<typeof reachSchema.entries>): Quantity =>
+  reachSchema.entries[key].pipe[2].metadata;
+export const segmentQuantity = (key: ShownKey<typeof segmentSchema.entries>): Quantity =>
+  segmentSchema.entries[key].pipe[2].metadata;

@@ -5,6 +5,7 @@ import { tubeVolume } from '../physics/tube.ts';
 import type { JointShares } from '../solve/joint-share.ts';
 import type { FlowState } from '../solve/types.ts';
 import { RESULT_VERSION } from '../version.ts';
+import { known } from './known.ts';
 import type {
   BalanceRow,
   CountsRow,
@@ -298,12 +299,6 @@ function findingRow(finding: FindingReport['findings'][number]): FindingRow {
         ? null
         : { because: accepted.because, by: accepted.by, on: accepted.on, up_to: accepted.upTo },
   };
-}
-
-/** null for what does not exist (NaN, or a division by no flow), and no −0. */
-function known(value: number): number | null {
-  if (!Number.isFinite(value)) return null;
-  return value === 0 ? 0 : value;
 }
 
 /** Reports name files only, so that they are the same wherever the program was started. */

@@ -1,6 +1,7 @@
 import { DEFAULT_MAX_REYNOLDS } from '../chip/defaults.ts';
 import { formatNumber, formatShare, showOf } from '../runsheet/shown.ts';
 import type { SectionInput, SectionState } from '../section/section.ts';
+import { figures, words } from './columns.ts';
 import { wrapText } from './plain-text.ts';
 import { textTable } from './text-table.ts';
 
@@ -48,12 +49,8 @@ export function sectionText(
     `${fluid.name}${at}: viscosity ${formatNumber(input.viscosityPaS * 1e3)} mPa s, density ${formatNumber(input.densityKgM3)} kg/m³`,
     '',
     ...textTable(
-      [
-        { head: '', align: 'left' },
-        { head: '', align: 'right' },
-        { head: '', align: 'left' },
-      ],
       rows,
+      [words('', ([what]) => what), figures('', ([, value]) => value), words('', ([, , given]) => given)],
       width,
     ).slice(1),
     '',

@@ -1,4 +1,5 @@
 import type { Spread } from '../spread/types.ts';
+import { known } from './known.ts';
 import type { SpreadPart } from './result-rows.ts';
 
 /** The spread as it stands in the result document. */
@@ -66,10 +67,4 @@ export function keptShare(
 function namedShares(shares: Float64Array | null, { causes }: Spread): Record<string, number> {
   if (shares === null) return {};
   return Object.fromEntries(causes.map(({ key }, cause) => [key, shares[cause]]));
-}
-
-/** null for what does not exist, and no −0. */
-function known(value: number): number | null {
-  if (!Number.isFinite(value)) return null;
-  return value === 0 ? 0 : value;
 }

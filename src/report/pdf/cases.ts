@@ -1,8 +1,11 @@
 import { formatNumber, type Show } from '../../runsheet/shown.ts';
+import { type Column, figures, words } from '../columns.ts';
 import { cleanText } from '../plain-text.ts';
+import { quantityTexts } from '../quantities.ts';
 import { hasWindow, outsideWindows, windowTexts } from '../reach-values.ts';
 import type { ReportedCase } from '../report.ts';
 import type { CountsRow, ReachRow } from '../result-rows.ts';
+import { portQuantity, reachQuantity } from '../result-schema.ts';
 import { verdictCounts } from '../verdict-line.ts';
 import { BODY, type PageContext, SMALL } from './context.ts';
 import { drawingText } from './drawing-text.ts';
@@ -12,7 +15,7 @@ import { FACTS, inputFacts } from './input-facts.ts';
 import type { Element, Paper } from './paper.ts';
 import { writePressureMap } from './pressure-map.ts';
 import { SIGN_HEIGHT, writeBanner, writeSignatures } from './sign-off.ts';
-import { cells, drawTable, type TableRow } from './table.ts';
+import { drawTable } from './table.ts';
 
 /** Cases beside each other in one table; more run on in tables below. */
 const CASES_ABREAST = 4;
@@ -80,72 +83,78 @@ function writePicture(contexts: readonly PageContext[], section: Element, below:
 /** What a case may change is on its own page. */
 const OF_EACH_CASE: ReadonlySet<string> = new Set(['fluid', 'depth', 'joints']);
 
+/** One line of the comparison, a text a case. */
+interface Line {
+  readonly label: string;
+  readonly texts: readonly string[];
+  /** What stands above it and heads the lines below. */
+  readonly group: string | null;
+}
+
 function writeTable(paper: Paper, section: Element, cases: readonly ReportedCase[]): void {
-  const { rows, more } = rowsOf(cases);
+  const { names, more } = windowedReaches(cases);
+  const line = (label: string, text: (one: ReportedCase) => string, group: string | null = null): Line => ({
+    label,
+    texts: cases.map(text),
+    group,
+  });
+  const verdict = line('verdict', ({ part }) => part.verdict);
+  const lines = [
+    verdict,
+    line(
+      'blockers, cautions, notes',
+      ({ part: { counts } }) => `${counts.blockers}, ${counts.cautions}, ${counts.notes}`,
+    ),
+    line('accepted', ({ part }) => String(part.counts.accepted)),
+    line('rules not run', ({ part }) => String(part.counts.rules_not_run)),
+    line('rules of blockers', ({ part }) => blockersText(part.findings)),
+    line('fluid', ({ part }) => part.fluid.name, 'Fluid'),
+    line('temperature', ({ part }) => `${formatNumber(part.fluid.temperature_c)} °C`),
+    line('viscosity', ({ part }) => `${formatNumber(part.fluid.viscosity_pa_s * 1e3)} mPa s`),
+    ...cases[0].part.ports
+      .slice(0, MOST_PORTS)
+      .map(({ name }, i) => line(name, (one) => portText(one, name), i === 0 ? PORTS : null)),
+    ...reachLines(cases, names),
+  ];
   drawTable(
     paper,
     section,
+    lines,
     [
-      { head: '', align: 'left', width: 'wrap' },
-      ...cases.map(({ name }) => ({ head: cleanText(name ?? ''), align: 'right', width: 'wrap' }) as const),
+      words('', ({ label }) => label, 'wrap'),
+      ...cases.map(
+        ({ name }, i): Column<Line> => ({
+          ...figures(cleanText(name ?? ''), ({ texts }) => texts[i]),
+          width: 'wrap',
+        }),
+      ),
     ],
-    rows,
-    { size: 7 },
+    { size: 7, group: ({ group }) => group, isBold: (one) => one === verdict },
   );
   if (more > 0)
     paper.paragraph(section, `… and ${more} more reaches with a window: see the tables of reaches.`, SMALL);
 }
 
-function rowsOf(cases: readonly ReportedCase[]): {
-  readonly rows: readonly TableRow[];
-  readonly more: number;
-} {
-  const row = (label: string, text: (one: ReportedCase, i: number) => string): TableRow =>
-    cells(label, ...cases.map(text));
-  const rows: TableRow[] = [
-    { kind: 'cells', cells: ['verdict', ...cases.map(({ part }) => part.verdict)], weight: 'bold' },
-    row(
-      'blockers, cautions, notes',
-      ({ part: { counts } }) => `${counts.blockers}, ${counts.cautions}, ${counts.notes}`,
-    ),
-    row('accepted', ({ part }) => String(part.counts.accepted)),
-    row('rules not run', ({ part }) => String(part.counts.rules_not_run)),
-    row('rules of blockers', ({ part }) => blockersText(part.findings)),
-    { kind: 'group', text: 'Fluid' },
-    row('fluid', ({ part }) => part.fluid.name),
-    row('temperature', ({ part }) => `${formatNumber(part.fluid.temperature_c)} °C`),
-    row('viscosity', ({ part }) => `${formatNumber(part.fluid.viscosity_pa_s * 1e3)} mPa s`),
-    { kind: 'group', text: 'Ports: condition; pressure at the pump; flow into the chip' },
-  ];
-  const [first] = cases;
-  first.part.ports.slice(0, MOST_PORTS).forEach(({ name }) => {
-    rows.push(row(name, (one) => portText(one, name)));
+const PORTS = 'Ports: condition; pressure at the pump; flow into the chip';
+const REACHES = 'Reaches with a window: flow; mean to peak floor shear; mean residence time';
+
+function reachLines(cases: readonly ReportedCase[], names: readonly string[]): readonly Line[] {
+  const values = cases.map((one) => reachTexts(one, new Set(names)));
+  return names.map((name, i) => {
+    const texts = values.map((value) => value.get(name) ?? null);
+    const windows = new Set(texts.map((text) => text?.windows ?? ''));
+    // a window that all cases share is said once
+    const [shared] = windows.size === 1 ? windows : [''];
+    return {
+      label: shared === '' ? name : `${name}: ${shared}`,
+      texts: texts.map((text) => {
+        if (text === null) return '–';
+        const own = shared === '' ? ` ${text.windows}` : '';
+        return `${text.verdict}${own}: ${text.values}`;
+      }),
+      group: i === 0 ? REACHES : null,
+    };
   });
-  const { names, more } = windowedReaches(cases);
-  if (names.length > 0) {
-    rows.push({
-      kind: 'group',
-      text: 'Reaches with a window: flow; mean to peak floor shear; mean residence time',
-    });
-    const values = cases.map((one) => reachTexts(one, new Set(names)));
-    for (const name of names) {
-      const texts = values.map((value) => value.get(name) ?? null);
-      const windows = new Set(texts.map((text) => text?.windows ?? ''));
-      // a window that all cases share is said once
-      const [shared] = windows.size === 1 ? windows : [''];
-      rows.push(
-        cells(
-          shared === '' ? name : `${name}: ${shared}`,
-          ...texts.map((text) => {
-            if (text === null) return '–';
-            const own = shared === '' ? ` ${text.windows}` : '';
-            return `${text.verdict}${own}: ${text.values}`;
-          }),
-        ),
-      );
-    }
-  }
-  return { rows, more };
 }
 
 const MOST_RULES = 6;
@@ -166,7 +175,8 @@ function blockersText(findings: ReportedCase['part']['findings']): string {
 function portText({ part, show }: ReportedCase, name: string): string {
   const port = part.ports.find((candidate) => candidate.name === name);
   if (port === undefined) return '–';
-  return `${port.condition}; ${show.text('pressure', port.supply_pressure_pa)}; ${show.text('flow', port.flow_m3_s)}`;
+  const text = quantityTexts(portQuantity, port, show);
+  return `${port.condition}; ${text('supply_pressure_pa')}; ${text('flow_m3_s')}`;
 }
 
 /** Names of reaches whose channel has a window in any of the cases, in drawn order of the first case that has it. */
@@ -209,9 +219,10 @@ function reachTexts(one: ReportedCase, wanted: ReadonlySet<string>): ReadonlyMap
 }
 
 function valuesText(row: ReachRow, show: Show): string {
+  const text = quantityTexts(reachQuantity, row, show);
   return [
-    show.text('flow', row.flow_m3_s),
-    `${show.text('wall_shear', row.wall_shear_floor_mean_pa)} to ${show.text('wall_shear', row.wall_shear_floor_peak_pa)}`,
-    show.text('residence_time', row.residence_time_s),
+    text('flow_m3_s'),
+    `${text('wall_shear_floor_mean_pa')} to ${text('wall_shear_floor_peak_pa')}`,
+    text('residence_time_s'),
   ].join('; ');
 }

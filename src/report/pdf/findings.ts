@@ -1,11 +1,12 @@
 import type { Finding } from '../../findings/types.ts';
 import { formatMm, measureText } from '../../runsheet/shown.ts';
+import { figures, words } from '../columns.ts';
 import { drawPlace, type PlaceDrawing } from '../place.ts';
 import { plural, verdictLine } from '../verdict-line.ts';
 import { BODY, BODY_BOLD, type PageContext, SMALL } from './context.ts';
 import { inMillimetres, paintLabel, paintScaleBar, paintStrokes, putCentred } from './paint-map.ts';
 import { type Element, lineHeight, POINTS_PER_MM } from './paper.ts';
-import { cells, drawTable } from './table.ts';
+import { drawTable } from './table.ts';
 
 /** Findings with a picture each, then as lines of a table, then only counted. */
 const PICTURES = 120;
@@ -188,26 +189,18 @@ function writeFurther({ paper, one }: PageContext, section: Element, findings: r
   drawTable(
     paper,
     section,
+    findings.map((finding, i) => ({ number: PICTURES + i + 1, finding })),
     [
-      { head: 'no.', align: 'right', width: 'fit' },
-      { head: 'severity', align: 'left', width: 'fit' },
-      { head: 'rule', align: 'left', width: 'fit' },
-      { head: 'x', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'y', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'measured', align: 'right', width: 'fit' },
-      { head: 'what', align: 'left', width: 'share' },
-    ],
-    findings.map((finding, i) =>
-      cells(
-        String(PICTURES + i + 1),
-        finding.accepted === null ? finding.severity : 'accepted',
-        finding.rule,
-        finding.xMm === null ? '–' : formatMm(finding.xMm),
-        finding.yMm === null ? '–' : formatMm(finding.yMm),
-        measureText(one.show, finding.measured, finding.unit, finding.rule),
-        finding.message,
+      figures('no.', ({ number }) => String(number)),
+      words('severity', ({ finding }) => (finding.accepted === null ? finding.severity : 'accepted')),
+      words('rule', ({ finding }) => finding.rule),
+      figures('x', ({ finding: { xMm } }) => (xMm === null ? '–' : formatMm(xMm)), 'mm'),
+      figures('y', ({ finding: { yMm } }) => (yMm === null ? '–' : formatMm(yMm)), 'mm'),
+      figures('measured', ({ finding: { measured, unit, rule } }) =>
+        measureText(one.show, measured, unit, rule),
       ),
-    ),
+      words('what', ({ finding }) => finding.message, 'share'),
+    ],
     { size: 6.5 },
   );
 }
@@ -220,13 +213,8 @@ function writeNotRun(
   if (notRun.length === 0) return;
   paper.y += 4;
   paper.heading(section, 2, 'Rules not run');
-  drawTable(
-    paper,
-    section,
-    [
-      { head: 'rule', align: 'left', width: 'fit' },
-      { head: 'why', align: 'left', width: 'wrap' },
-    ],
-    notRun.map(({ rule, why }) => cells(rule, why)),
-  );
+  drawTable(paper, section, notRun, [
+    words('rule', ({ rule }) => rule),
+    words('why', ({ why }) => why, 'wrap'),
+  ]);
 }

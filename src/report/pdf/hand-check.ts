@@ -1,11 +1,12 @@
 import { sectionForm } from '../../physics/section.ts';
-import { formatNumber, type Show } from '../../runsheet/shown.ts';
+import { formatNumber, type Shown } from '../../runsheet/shown.ts';
+import { figures, words } from '../columns.ts';
 import { reachesThatMatter } from '../reach-values.ts';
 import type { ReportedCase } from '../report.ts';
 import type { ReachRow } from '../result-rows.ts';
 import { BODY, type PageContext } from './context.ts';
 import type { Element } from './paper.ts';
-import { cells, drawTable } from './table.ts';
+import { drawTable } from './table.ts';
 
 /** What can be checked with pencil and paper: plate formulas beside the exact values, flows in and out, the power of the depth. */
 export function writeHandCheck(context: PageContext): void {
@@ -71,22 +72,27 @@ function writePlates({ paper, one }: PageContext, section: Element, row: Checked
     paper,
     section,
     [
-      { head: 'what', align: 'left', width: 'share' },
-      { head: 'by hand, plates', align: 'left', width: 'fit' },
-      { head: 'plates', align: 'right', width: 'fit' },
-      { head: 'exact', align: 'right', width: 'fit' },
-      { head: 'exact / plates', align: 'right', width: 'fit' },
-    ],
+      {
+        what: 'pressure drop',
+        formula: '12 µ L Q / (w h³)',
+        shown: 'pressure',
+        plates: platesDrop,
+        exact: Math.abs(row.pressure_drop_pa),
+      },
+      {
+        what: `peak shear on the ${wall}`,
+        formula: '6 µ Q / (w h²)',
+        shown: 'wall_shear',
+        plates: platesShear,
+        exact: peak,
+      },
+    ] as const,
     [
-      plateRow(
-        'pressure drop',
-        '12 µ L Q / (w h³)',
-        'pressure',
-        platesDrop,
-        Math.abs(row.pressure_drop_pa),
-        show,
-      ),
-      plateRow(`peak shear on the ${wall}`, '6 µ Q / (w h²)', 'wall_shear', platesShear, peak, show),
+      words('what', ({ what }) => what, 'share'),
+      words('by hand, plates', ({ formula }) => formula),
+      figures('plates', ({ plates, exact, shown }) => textOf(plates, Math.max(plates, exact), shown)),
+      figures('exact', ({ plates, exact, shown }) => textOf(exact, Math.max(plates, exact), shown)),
+      figures('exact / plates', ({ plates, exact }) => formatNumber(exact / plates)),
     ],
     { size: 7.5 },
   );
@@ -97,25 +103,17 @@ function writePlates({ paper, one }: PageContext, section: Element, row: Checked
     BODY,
   );
   paper.y += 6;
+
+  function textOf(value: number, largest: number, shown: Shown): string {
+    const { text, si } = show.unit(shown, largest);
+    return `${formatNumber(value / si)} ${text}`;
+  }
 }
 
 function whyThisReach(one: ReportedCase): string {
   return reachesThatMatter(one, 1).windows
     ? 'The reach that matters most: the first with a window, one outside it before the others.'
     : 'The reach that matters most: no channel has a window, so the one with the largest wall shear.';
-}
-
-function plateRow(
-  what: string,
-  formula: string,
-  shown: 'pressure' | 'wall_shear',
-  plates: number,
-  exact: number,
-  show: Show,
-): ReturnType<typeof cells> {
-  const unit = show.unit(shown, Math.max(plates, exact));
-  const text = (value: number): string => `${formatNumber(value / unit.si)} ${unit.text}`;
-  return cells(what, formula, text(plates), text(exact), formatNumber(exact / plates));
 }
 
 function writeBalance({ paper, one }: PageContext, section: Element): void {
@@ -166,15 +164,15 @@ function writeDepth({ paper, one }: PageContext, section: Element, row: Checked)
     paper,
     section,
     [
-      { head: '5 % more depth changes', align: 'left', width: 'share' },
-      { head: 'at the same pressure drop by', align: 'right', width: 'fit' },
-      { head: 'at the same flow by', align: 'right', width: 'fit' },
-    ],
+      ['flow', change(-resistance), '0 %'],
+      ['pressure drop', '0 %', change(resistance)],
+      ['mean floor shear', change(shearPerGradient), change(resistance + shearPerGradient)],
+      ['residence time', change(area + resistance), change(area)],
+    ] as const,
     [
-      cells('flow', change(-resistance), '0 %'),
-      cells('pressure drop', '0 %', change(resistance)),
-      cells('mean floor shear', change(shearPerGradient), change(resistance + shearPerGradient)),
-      cells('residence time', change(area + resistance), change(area)),
+      words('5 % more depth changes', ([what]) => what, 'share'),
+      figures('at the same pressure drop by', ([, atDrop]) => atDrop),
+      figures('at the same flow by', ([, , atFlow]) => atFlow),
     ],
     { size: 7.5 },
   );

@@ -1,6 +1,9 @@
 import { formatMm } from '../../runsheet/shown.ts';
+import { words } from '../columns.ts';
+import { quantityColumns } from '../quantities.ts';
+import { portQuantity } from '../result-schema.ts';
 import { BODY, type PageContext, SMALL } from './context.ts';
-import { cells, drawTable } from './table.ts';
+import { drawTable } from './table.ts';
 
 /** Where to drill or punch: from the lower left corner of the chip edge, and in drawing coordinates. */
 export function writeHoles({ paper, one, geometry }: PageContext): void {
@@ -18,27 +21,22 @@ export function writeHoles({ paper, one, geometry }: PageContext): void {
       `which is ${formatMm(corner.x)}, ${formatMm(corner.y)} mm in the drawing; beside them the drawing's own coordinates, y down. Whoever works from the other side mirrors x.`,
     SMALL,
   );
+  const { ports } = one.part;
+  const columns = quantityColumns(portQuantity, ports, one.show);
   drawTable(
     paper,
     section,
+    ports,
     [
-      { head: 'hole', align: 'left', width: 'share' },
-      { head: 'x from corner', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'y from corner', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'diameter', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'x in drawing', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'y in drawing', unit: 'mm', align: 'right', width: 'fit' },
-    ],
-    one.part.ports.map((port) =>
-      cells(
-        port.name,
-        formatMm(port.x_mm - corner.x),
-        formatMm(corner.y - port.y_mm),
-        formatMm(port.diameter_mm),
-        formatMm(port.x_mm),
-        formatMm(port.y_mm),
+      words('hole', ({ name }) => name, 'share'),
+      ...columns(
+        { key: 'x_mm', head: 'x from corner', value: ({ x_mm }) => x_mm - corner.x },
+        { key: 'y_mm', head: 'y from corner', value: ({ y_mm }) => corner.y - y_mm },
+        'diameter_mm',
+        'x_mm',
+        'y_mm',
       ),
-    ),
+    ],
     { size: 7.5 },
   );
 }

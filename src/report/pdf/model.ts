@@ -1,11 +1,13 @@
 import type { Chip, Sourced } from '../../chip/types.ts';
 import { formatMm, formatNumber } from '../../runsheet/shown.ts';
+import { figures, words } from '../columns.ts';
 import { jointsText } from '../joints-text.ts';
+import { known } from '../known.ts';
 import type { ReportedCase } from '../report.ts';
 import { BODY, depthFrom, type PageContext } from './context.ts';
-import { jointText } from './front-page.ts';
 import type { Element, Paper } from './paper.ts';
-import { cells, drawTable, type TableRow } from './table.ts';
+import { jointText } from './port-columns.ts';
+import { drawTable } from './table.ts';
 
 /** The model in words, its formulas with their sources, and the depths and limits in force with where each came from. */
 export function writeModel({ paper, one }: PageContext): void {
@@ -18,12 +20,12 @@ export function writeModel({ paper, one }: PageContext): void {
   drawTable(
     paper,
     section,
+    FORMULAS,
     [
-      { head: 'what', align: 'left', width: 'fit' },
-      { head: 'formula', align: 'left', width: 'wrap' },
-      { head: 'source', align: 'left', width: 'wrap' },
+      words('what', ([what]) => what),
+      words('formula', ([, formula]) => formula, 'wrap'),
+      words('source', ([, , source]) => source, 'wrap'),
     ],
-    FORMULAS.map((texts) => cells(...texts)),
     { size: 6.8 },
   );
   writeJoints(paper, section, one);
@@ -95,21 +97,14 @@ function writeJoints(paper: Paper, section: Element, one: ReportedCase): void {
   const { network } = one;
   if (network.joints.length === 0) return;
   paper.heading(section, 2, 'Joints');
-  drawTable(
-    paper,
-    section,
-    [
-      { head: 'kind', align: 'left', width: 'share' },
-      { head: 'number', align: 'right', width: 'fit' },
-      { head: 'together they add', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'one could be off by ±', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'first at x', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'y', unit: 'mm', align: 'right', width: 'fit' },
-    ],
-    network.joints.map(({ kind, count, addedMm, boundMm, xMm, yMm }) =>
-      cells(kind, String(count), lengthText(addedMm), lengthText(boundMm), formatMm(xMm), formatMm(yMm)),
-    ),
-  );
+  drawTable(paper, section, network.joints, [
+    words('kind', ({ kind }) => kind, 'share'),
+    figures('number', ({ count }) => String(count)),
+    figures('together they add', ({ addedMm }) => lengthText(addedMm), 'mm'),
+    figures('one could be off by ±', ({ boundMm }) => lengthText(boundMm), 'mm'),
+    figures('first at x', ({ xMm }) => formatMm(xMm), 'mm'),
+    figures('y', ({ yMm }) => formatMm(yMm), 'mm'),
+  ]);
   const joints = jointsText(network.joints);
   if (joints !== null && network.chip.joints === 'resolved') paper.paragraph(section, `${joints}.`, BODY);
   const sum = (lengths: Float64Array): number => lengths.reduce((total, length) => total + length, 0);
@@ -144,20 +139,13 @@ function writeCentrelineFlows(
   drawTable(
     paper,
     section,
+    ports.map((port, i) => ({ port, centreline: flows[i] })),
     [
-      { head: 'port', align: 'left', width: 'share' },
-      { head: 'flow into chip, as counted', align: 'right', width: 'fit' },
-      { head: 'by centrelines alone', align: 'right', width: 'fit' },
-      { head: 'joints not resolved could move by ±', align: 'right', width: 'fit' },
+      words('port', ({ port }) => port.name, 'share'),
+      figures('flow into chip, as counted', ({ port }) => show.text('flow', port.flow_m3_s)),
+      figures('by centrelines alone', ({ centreline }) => show.text('flow', known(centreline))),
+      figures('joints not resolved could move by ±', ({ port }) => jointText(port)),
     ],
-    ports.map((port, i) =>
-      cells(
-        port.name,
-        show.text('flow', port.flow_m3_s),
-        Number.isFinite(flows[i]) ? show.text('flow', flows[i]) : '–',
-        jointText(port),
-      ),
-    ),
   );
   if (part.ports.length > ports.length) paper.paragraph(section, `… of ${part.ports.length} ports.`, BODY);
 }
@@ -167,28 +155,13 @@ const LAYER_BOUND = 500;
 function writeLayers(paper: Paper, section: Element, chip: Chip): void {
   if (chip.layers.length === 0) return;
   paper.heading(section, 2, 'Layers');
-  drawTable(
-    paper,
-    section,
-    [
-      { head: 'layer', align: 'left', width: 'share' },
-      { head: 'plane', align: 'left', width: 'share' },
-      { head: 'depth', unit: 'µm', align: 'right', width: 'fit' },
-      { head: 'depth from', align: 'left', width: 'fit' },
-      { head: 'profile', align: 'left', width: 'fit' },
-    ],
-    chip.layers
-      .slice(0, LAYER_BOUND)
-      .map((layer) =>
-        cells(
-          layer.name === '' ? '(none)' : layer.name,
-          chip.planes[layer.plane] ?? '',
-          Number.isNaN(layer.depthM) ? '–' : formatNumber(layer.depthM * 1e6),
-          Number.isNaN(layer.depthM) ? '–' : depthFrom(layer),
-          layer.profile,
-        ),
-      ),
-  );
+  drawTable(paper, section, chip.layers.slice(0, LAYER_BOUND), [
+    words('layer', ({ name }) => (name === '' ? '(none)' : name), 'share'),
+    words('plane', ({ plane }) => chip.planes[plane] ?? '', 'share'),
+    figures('depth', ({ depthM }) => (Number.isNaN(depthM) ? '–' : formatNumber(depthM * 1e6)), 'µm'),
+    words('depth from', (layer) => (Number.isNaN(layer.depthM) ? '–' : depthFrom(layer))),
+    words('profile', ({ profile }) => profile),
+  ]);
 }
 
 function writeLimits(paper: Paper, section: Element, { limits, process, layers }: Chip): void {
@@ -206,7 +179,7 @@ function writeLimits(paper: Paper, section: Element, { limits, process, layers }
   const depths = [
     ...new Set(layers.map(({ depthM }) => depthM).filter((depthM) => !Number.isNaN(depthM))),
   ].slice(0, 12);
-  const rows: TableRow[] = [
+  const rows = [
     limitRow('narrowest channel', limits.minWidthM, micrometres),
     ...depths.map((depthM) =>
       limitRow(`thinnest wall, depth ${micrometres(depthM)}`, limits.minWallM(depthM), micrometres),
@@ -231,21 +204,18 @@ function writeLimits(paper: Paper, section: Element, { limits, process, layers }
     ),
     limitRow('stiffness', limits.stiffnessPa, (pascals) => `${formatNumber(pascals / 1e6)} MPa`),
   ];
-  drawTable(
-    paper,
-    section,
-    [
-      { head: 'limit', align: 'left', width: 'fit' },
-      { head: 'value', align: 'left', width: 'fit' },
-      { head: 'from', align: 'left', width: 'share' },
-    ],
-    rows,
-  );
+  drawTable(paper, section, rows, [
+    words('limit', ([what]) => what),
+    words('value', ([, value]) => value),
+    words('from', ([, , origin]) => origin, 'share'),
+  ]);
   paper.paragraph(section, "The relative slack of every comparison is 1e-9, in the drawing's favour.", BODY);
 }
 
-function limitRow<T>(what: string, limit: Sourced<T> | null, text: (value: T) => string): TableRow {
-  return limit === null
-    ? cells(what, 'none', 'not given: not checked')
-    : cells(what, text(limit.value), limit.origin);
+function limitRow<T>(
+  what: string,
+  limit: Sourced<T> | null,
+  text: (value: T) => string,
+): readonly [string, string, string] {
+  return limit === null ? [what, 'none', 'not given: not checked'] : [what, text(limit.value), limit.origin];
 }

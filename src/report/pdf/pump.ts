@@ -1,10 +1,11 @@
 import type { FoundTarget } from '../../solve/targets.ts';
+import { type Column, words } from '../columns.ts';
 import { cleanText } from '../plain-text.ts';
 import { type PumpCurve, pumpCurve } from '../pump-curve.ts';
-import { rangeText, settingCells, targetCells } from '../pump-rows.ts';
+import { brokenRules, limitsText, rangeText, settingColumns, targetColumns } from '../pump-rows.ts';
 import { BODY, type PageContext, SMALL } from './context.ts';
 import type { Element, Paper, TextStyle } from './paper.ts';
-import { cells, drawTable } from './table.ts';
+import { drawTable } from './table.ts';
 
 /** Curves drawn; of more targets the tables tell. */
 const MOST_CURVES = 24;
@@ -22,55 +23,22 @@ export function writePump({ paper, one }: PageContext): void {
   );
   paper.paragraph(section, LEGEND, SMALL);
   paper.heading(section, 2, 'Targets');
-  drawTable(
-    paper,
-    section,
-    [
-      { head: 'target', align: 'left', width: 'share' },
-      { head: 'quantity', align: 'left', width: 'fit' },
-      { head: 'wanted', align: 'right', width: 'fit' },
-      { head: 'reached', align: 'right', width: 'fit' },
-      { head: 'by', align: 'left', width: 'share' },
-    ],
-    pump.targets.map((target) => {
-      const { on, quantity, wanted, reached, by } = targetCells(target, show);
-      return cells(on, quantity, wanted, reached, by);
-    }),
-    { size: 7.5 },
-  );
+  drawTable(paper, section, pump.targets, targetColumns(show), { size: 7.5 });
   paper.heading(section, 2, 'Settings');
-  drawTable(
-    paper,
-    section,
-    [
-      { head: 'set', align: 'left', width: 'share' },
-      { head: 'pressure to hold', unit: 'at the pump', align: 'right', width: 'fit' },
-      { head: 'or flow to give', unit: 'into the chip', align: 'right', width: 'fit' },
-      { head: 'pressure', unit: 'in the chip', align: 'right', width: 'fit' },
-      { head: 'breaks', align: 'left', width: 'wrap' },
-      { head: 'pump limits', align: 'left', width: 'wrap' },
-    ],
-    pump.targets.map((target) => {
-      const { port, pressure, flow, inChip, breaks, kept, limits } = settingCells(one, target);
-      return cells(port, pressure, flow, inChip, breaks === '' ? 'no limit' : breaks, `${kept}: ${limits}`);
-    }),
-    { size: 7.5 },
-  );
+  const columns: readonly Column<FoundTarget>[] = [
+    ...settingColumns(one, 'pressure'),
+    words('breaks', (target) => brokenRules(one, target) || 'no limit', 'wrap'),
+    words('pump limits', (target) => limitsText(one, target), 'wrap'),
+  ];
+  drawTable(paper, section, pump.targets, columns, { size: 7.5 });
   for (const target of pump.targets) {
     const text = rangeText(network, target, show);
     if (text !== null) paper.paragraph(section, `${text}.`, BODY);
   }
-  writeCurves(
-    paper,
-    section,
-    pump.targets.slice(0, MOST_CURVES).map((target) => toCurve(target)),
-  );
+  const curves = pump.targets.slice(0, MOST_CURVES).map((target) => pumpCurve(network, target, show));
+  writeCurves(paper, section, curves);
   const more = pump.targets.length - MOST_CURVES;
   if (more > 0) paper.paragraph(section, `… and ${more} more targets, in the tables above.`, SMALL);
-
-  function toCurve(target: FoundTarget): PumpCurve {
-    return pumpCurve(network, target, show);
-  }
 }
 
 const LEGEND =

@@ -1,5 +1,6 @@
 import { formatShare, type Show } from '../../runsheet/shown.ts';
 import type { Spread, SpreadOutput } from '../../spread/types.ts';
+import { words } from '../columns.ts';
 import { cleanText } from '../plain-text.ts';
 import { type DistributionChart, distributionChart } from '../spread-charts.ts';
 import {
@@ -8,13 +9,13 @@ import {
   type RankedCause,
   rankedCauses,
   remarks,
-  spreadCells,
+  spreadColumns,
   toleranceText,
   yieldText,
 } from '../spread-rows.ts';
 import { BODY, BODY_BOLD, type PageContext, SMALL } from './context.ts';
 import type { Element, Paper, TextStyle } from './paper.ts';
-import { cells, drawTable, type TableRow } from './table.ts';
+import { drawTable } from './table.ts';
 
 const MOST_CHARTS = 24;
 const MOST_ROWS = 1000;
@@ -59,16 +60,11 @@ function method({ seed, draws }: Spread): string {
 
 function writeTolerances(paper: Paper, section: Element, { causes }: Spread, show: Show): void {
   paper.heading(section, 2, 'Tolerances');
-  drawTable(
-    paper,
-    section,
-    [
-      { head: 'tolerance', align: 'left', width: 'share' },
-      { head: 'what varies', align: 'left', width: 'share' },
-      { head: 'by', align: 'left', width: 'fit' },
-    ],
-    causes.slice(0, MOST_ROWS).map((cause) => cells(cause.key, cause.text, toleranceText(cause, show))),
-  );
+  drawTable(paper, section, causes.slice(0, MOST_ROWS), [
+    words('tolerance', ({ key }) => key, 'share'),
+    words('what varies', ({ text }) => text, 'share'),
+    words('by', (cause) => toleranceText(cause, show)),
+  ]);
 }
 
 /* ---------- causes ---------- */
@@ -253,39 +249,15 @@ function paintAxis(
 function writeNumbers(paper: Paper, section: Element, spread: Spread, show: Show): void {
   paper.newPage('landscape');
   paper.heading(section, 2, 'Numbers');
-  const rows: TableRow[] = [];
-  let group = '';
-  for (const output of spread.outputs.slice(0, MOST_ROWS)) {
-    if (output.on !== group) {
-      rows.push({ kind: 'group', text: GROUPS[output.on] });
-      group = output.on;
-    }
-    const { what, quantity, unit, nominal, mean, sd, linearSd, low, high, asked, kept, causes, notLinear } =
-      spreadCells(output, spread, show);
-    rows.push(
-      cells(what, quantity, unit, nominal, mean, low, high, sd, linearSd, notLinear, asked, kept, causes),
-    );
-  }
+  const outputs = spread.outputs.slice(0, MOST_ROWS);
+  const { what, quantity, unit, nominal, mean, low, high, sd, linearSd, linear, asked, kept, causes } =
+    spreadColumns(spread, show);
   drawTable(
     paper,
     section,
-    [
-      { head: 'what', align: 'left', width: 'share' },
-      { head: 'quantity', align: 'left', width: 'fit' },
-      { head: 'unit', align: 'left', width: 'fit' },
-      { head: 'nominal', align: 'right', width: 'fit' },
-      { head: 'mean', align: 'right', width: 'fit' },
-      { head: '2.5 %', align: 'right', width: 'fit' },
-      { head: '97.5 %', align: 'right', width: 'fit' },
-      { head: 'sd', align: 'right', width: 'fit' },
-      { head: 'sd,', unit: 'first order', align: 'right', width: 'fit' },
-      { head: 'linear', align: 'left', width: 'fit' },
-      { head: 'asked', align: 'left', width: 'fit' },
-      { head: 'kept', align: 'right', width: 'fit' },
-      { head: 'main causes', align: 'left', width: 'share' },
-    ],
-    rows,
-    { size: 6.5 },
+    outputs,
+    [what, quantity, unit, nominal, mean, low, high, sd, linearSd, linear, asked, kept, causes],
+    { size: 6.5, group: ({ on }, i) => (on === outputs[i - 1]?.on ? null : GROUPS[on]) },
   );
   const more = spread.outputs.length - MOST_ROWS;
   if (more > 0) paper.paragraph(section, `… and ${more} more, in the CSV and JSON files.`, SMALL);
