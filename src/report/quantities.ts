@@ -33,6 +33,15 @@ export function quantityTexts<Key extends string>(
   };
 }
 
+/** Makes columns of values that each stand with a unit of their own. */
+export function valueColumns<Key extends string>(
+  quantityOf: (key: Key) => Quantity,
+  show: Show,
+): (key: Key, head?: string) => Column<{ readonly [key in Key]: number | null }> {
+  return (key, head = quantityOf(key).head) =>
+    figures(head, (row) => quantityTexts(quantityOf, row, show)(key));
+}
+
 /** A column's quantity: its key, or its key with what differs in this table. */
 export type Wanted<Key extends string, Row> =
   | Key

@@ -1,3 +1,4 @@
+import { known } from './known.ts';
 import {
   drawMap,
   type MapDrawing,
@@ -11,8 +12,10 @@ import {
 import { chipGeometry } from './map-geometry.ts';
 import { cleanText, displayWidth } from './plain-text.ts';
 import { AT_FOUND_SETTINGS } from './pump-rows.ts';
+import { quantityTexts } from './quantities.ts';
 import type { MapQuantity } from './reach-values.ts';
 import type { ReportedCase } from './report.ts';
+import { portQuantity, reachQuantity } from './result-schema.ts';
 import { verdictLine } from './verdict-line.ts';
 
 export interface SvgOptions {
@@ -115,32 +118,28 @@ function reaches(drawing: MapDrawing, one: ReportedCase): string[] {
 const LONG_TITLES = 10_000;
 
 function shortTitle({ network, flow, show }: ReportedCase, reach: number): string {
-  const flowM3s = flow.reachFlow[reach];
-  const dropPa = flow.reachPressureDrop[reach];
-  return `${cleanText(network.reachName(reach))}: ${show.text('flow', known(flowM3s))}, ${show.text('pressure', known(dropPa))}`;
-}
-
-function known(value: number): number | null {
-  return Number.isNaN(value) ? null : value;
+  const [flowM3s, dropPa] = [known(flow.reachFlow[reach]), known(flow.reachPressureDrop[reach])];
+  return `${cleanText(network.reachName(reach))}: ${show.text('flow', flowM3s)}, ${show.text('pressure', dropPa)}`;
 }
 
 /** What hovering over a reach shows: its numbers, a line each. */
 function reachTitle({ part, show }: ReportedCase, reach: number): string {
   const row = part.reaches.at(reach);
+  const text = quantityTexts(reachQuantity, row, show);
   return [
     `${cleanText(row.name)} (${cleanText(row.from)} → ${cleanText(row.to)})`,
-    `flow ${show.text('flow', row.flow_m3_s)}`,
-    `pressure drop ${show.text('pressure', row.pressure_drop_pa)}`,
-    `floor shear ${show.text('wall_shear', row.wall_shear_floor_mean_pa)} mean, ${show.text('wall_shear', row.wall_shear_floor_peak_pa)} peak`,
-    `residence ${show.text('residence_time', row.residence_time_s)} mean, ${show.text('residence_time', row.fastest_time_s)} fastest`,
-    `${show.text('cross_length', row.width_m)} wide, ${show.text('cross_length', row.depth_m)} deep, ${show.text('length', row.length_m)} long`,
+    `flow ${text('flow_m3_s')}`,
+    `pressure drop ${text('pressure_drop_pa')}`,
+    `floor shear ${text('wall_shear_floor_mean_pa')} mean, ${text('wall_shear_floor_peak_pa')} peak`,
+    `residence ${text('residence_time_s')} mean, ${text('fastest_time_s')} fastest`,
+    `${text('width_m')} wide, ${text('depth_m')} deep, ${text('length_m')} long`,
   ].join('\n');
 }
 
 function holes({ holes: wells }: MapDrawing, { part, show }: ReportedCase): string[] {
   return wells.map(({ name, x, y, radiusMm }, i) => {
-    const { pressure_pa, flow_m3_s, condition } = part.ports[i];
-    const title = `${cleanText(name)} (${condition})\npressure ${show.text('pressure', pressure_pa)}\nflow into the chip ${show.text('flow', flow_m3_s)}`;
+    const text = quantityTexts(portQuantity, part.ports[i], show);
+    const title = `${cleanText(name)} (${part.ports[i].condition})\npressure ${text('pressure_pa')}\nflow into the chip ${text('flow_m3_s')}`;
     return `<circle cx="${mm(x)}" cy="${mm(y)}" r="${mm(radiusMm)}" fill="#ffffff" stroke="#202020" stroke-width="0.3"><title>${escapeXml(title)}</title></circle>\n`;
   });
 }
