@@ -1,15 +1,8 @@
 import { known } from './known.ts';
-import {
-  drawMap,
-  type MapDrawing,
-  type MapLabel,
-  type MapStroke,
-  mapNotes,
-  PALE_FILL,
-  PALE_LINE,
-  QUANTITY_TITLES,
-} from './map.ts';
+import { drawMap, mapNotes } from './map.ts';
 import { chipGeometry } from './map-geometry.ts';
+import { MAP_QUANTITIES } from './map-quantities.ts';
+import { type MapDrawing, type MapLabel, type MapStroke, PALE_FILL, PALE_LINE } from './map-types.ts';
 import { cleanText, displayWidth } from './plain-text.ts';
 import { AT_FOUND_SETTINGS } from './pump-rows.ts';
 import { quantityTexts } from './quantities.ts';
@@ -48,7 +41,7 @@ export function svgPicture(one: ReportedCase, options: SvgOptions): string {
   const title = [
     file,
     one.name === null ? '' : `, case ${cleanText(one.name)}`,
-    `: ${QUANTITY_TITLES[options.quantity]}`,
+    `: ${MAP_QUANTITIES[options.quantity].title}`,
     one.pump === undefined ? '' : `, ${AT_FOUND_SETTINGS}`,
   ].join('');
   const foundText = one.pump === undefined ? '' : ` Computed ${AT_FOUND_SETTINGS}.`;

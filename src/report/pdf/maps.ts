@@ -1,4 +1,5 @@
-import { drawMap, mapNotes, QUANTITY_TITLES } from '../map.ts';
+import { drawMap, mapNotes } from '../map.ts';
+import { MAP_QUANTITIES } from '../map-quantities.ts';
 import { type PageContext, SMALL } from './context.ts';
 import { paintMap } from './paint-map.ts';
 import { POINTS_PER_MM } from './paper.ts';
@@ -25,7 +26,7 @@ export function writeMaps({ paper, one, geometry, measure, readable }: PageConte
     });
     const height = drawing.heightMm * POINTS_PER_MM;
     paper.need(height + TEXT_POINTS - 2);
-    const title = QUANTITY_TITLES[quantity];
+    const title = MAP_QUANTITIES[quantity].title;
     paper.heading(section, 2, `${title[0].toUpperCase()}${title.slice(1)}`);
     paintMap(
       paper,

@@ -1,4 +1,4 @@
-import { type MapDrawing, type MapLabel, type MapStroke, PALE_FILL, PALE_LINE } from '../map.ts';
+import { type MapDrawing, type MapLabel, type MapStroke, PALE_FILL, PALE_LINE } from '../map-types.ts';
 import { type Element, type Paper, POINTS_PER_MM } from './paper.ts';
 
 /** Paints a map with its upper left corner at x, y (points) as a tagged figure; its texts were measured in the paper's font. */
