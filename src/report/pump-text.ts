@@ -10,7 +10,7 @@ import {
   settingColumns,
   targetColumns,
 } from './pump-rows.ts';
-import type { Report, ReportedCase } from './report.ts';
+import { ofCase, type Report, type ReportedCase } from './report.ts';
 import { textTable } from './text-table.ts';
 
 /** What the command pump adds to the summary of a check: each target with what is reached, and each port's settings. Ends with a line end. */
@@ -48,7 +48,7 @@ function settingLines(one: ReportedCase, targets: readonly FoundTarget[], width:
 }
 
 function caseLines(one: ReportedCase, width: number): readonly string[] {
-  const { name, network, pump, show } = one;
+  const { network, pump, show } = one;
   const targets = pump?.targets ?? [];
   const broken = targets.flatMap((target) => {
     const rules = brokenRules(one, target);
@@ -58,7 +58,7 @@ function caseLines(one: ReportedCase, width: number): readonly string[] {
   });
   const ranges = targets.flatMap((target) => rangeText(network, target, show) ?? []);
   return [
-    name === null ? 'pump settings' : `pump settings, case ${cleanText(name)}`,
+    ofCase('pump settings', one),
     ...textTable(targets, targetColumns(show), width),
     '',
     ...settingLines(one, targets, width),

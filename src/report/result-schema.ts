@@ -8,15 +8,27 @@ import type { Quantity } from './quantities.ts';
  */
 
 const text = v.string();
+const sha256 = v.pipe(text, v.regex(/^[0-9a-f]{64}$/));
 const count = (description: string) =>
   v.pipe(v.number(), v.integer(), v.minValue(0), v.description(description));
 const number = (description: string) => v.pipe(v.number(), v.description(description));
 const maybe = (description: string) => v.pipe(v.nullable(v.number()), v.description(description));
-/** A number that people read too: what it measures, and its head in tables. */
-const shown = (description: string, kind: Quantity['kind'], head: string) =>
+/** Numbers that people read too: each with what it measures, and its head in tables. */
+const size = (kind: Quantity['kind']) => (description: string, head: string) =>
   v.pipe(v.number(), v.description(description), v.metadata({ kind, head }));
-const maybeShown = (description: string, kind: Quantity['kind'], head: string, second?: string) =>
+const quantity = (kind: Quantity['kind']) => (description: string, head: string, second?: string) =>
   v.pipe(v.nullable(v.number()), v.description(description), v.metadata({ kind, head, second }));
+const [drawnMm, length] = [size('drawn_mm'), size('length')];
+const [flow, pressure, shear, time] = [
+  quantity('flow'),
+  quantity('pressure'),
+  quantity('wall_shear'),
+  quantity('residence_time'),
+];
+const [across, velocity] = [quantity('cross_length'), quantity('velocity')];
+const resistance = quantity('resistance')('Pressure drop per flow', 'resistance');
+const floorMean = shear('Wall shear on the floor, mean over its width', 'floor mean');
+const floorPeak = shear('Wall shear on the floor, in its middle', 'floor peak');
 
 export const toolSchema = v.strictObject({
   name: text,
@@ -26,16 +38,14 @@ export const toolSchema = v.strictObject({
 
 export const layoutSchema = v.strictObject({
   file: v.pipe(text, v.description('File name of the layout')),
-  sha256: v.pipe(text, v.regex(/^[0-9a-f]{64}$/)),
+  sha256,
   width_mm: maybe('Width of the drawing'),
   height_mm: maybe('Height of the drawing'),
   unit_mm: number('Millimetres per unit of the drawing'),
   ignored: v.pipe(v.record(text, count('How many')), v.description('What was drawn and not read, by kind')),
 });
 
-export const runSheetSchema = v.nullable(
-  v.strictObject({ file: text, sha256: v.pipe(text, v.regex(/^[0-9a-f]{64}$/)) }),
-);
+export const runSheetSchema = v.nullable(v.strictObject({ file: text, sha256 }));
 
 export const fluidSchema = v.strictObject({
   name: text,
@@ -64,23 +74,18 @@ export const countsSchema = v.strictObject({
 
 export const portSchema = v.strictObject({
   name: text,
-  x_mm: shown('Centre, drawing coordinates in mm', 'drawn_mm', 'x in drawing'),
-  y_mm: shown('Centre, drawing coordinates in mm, y down', 'drawn_mm', 'y in drawing'),
-  diameter_mm: shown('Diameter of the hole', 'drawn_mm', 'diameter'),
+  x_mm: drawnMm('Centre, drawing coordinates in mm', 'x in drawing'),
+  y_mm: drawnMm('Centre, drawing coordinates in mm, y down', 'y in drawing'),
+  diameter_mm: drawnMm('Diameter of the hole', 'diameter'),
   condition: v.picklist(['pressure', 'flow', 'head', 'open', 'sealed', 'unset']),
-  pressure_pa: maybeShown('Gauge pressure in the chip at the port', 'pressure', 'in the chip'),
-  supply_pressure_pa: maybeShown(
+  pressure_pa: pressure('Gauge pressure in the chip at the port', 'in the chip'),
+  supply_pressure_pa: pressure(
     'Gauge pressure at the far end of the tubing, or the port without tubing',
-    'pressure',
     'at the supply',
   ),
-  flow_m3_s: maybeShown('Flow into the chip; negative leaves it', 'flow', 'flow into chip'),
-  tubing_volume_m3: maybeShown('Volume of all tubing pieces; null without tubing', 'volume', 'tubing holds'),
-  tubing_time_s: maybeShown(
-    'Tubing volume over flow; null without tubing or flow',
-    'residence_time',
-    'time in tubing',
-  ),
+  flow_m3_s: flow('Flow into the chip; negative leaves it', 'flow into chip'),
+  tubing_volume_m3: quantity('volume')('Volume of all tubing pieces; null without tubing', 'tubing holds'),
+  tubing_time_s: time('Tubing volume over flow; null without tubing or flow', 'time in tubing'),
   joint_flow_share: maybe('How far joints that were not resolved could move the flow, as a share of it'),
   joint_pressure_share: maybe('How far they could move the pressure in the chip, as a share of it'),
 });
@@ -99,43 +104,33 @@ export const reachSchema = v.strictObject({
   layer: v.pipe(v.nullable(text), v.description('null for a stroke in no layer')),
   from: v.pipe(text, v.description('Node at the start, in drawn direction')),
   to: v.pipe(text, v.description('Node at the end, in drawn direction')),
-  width_m: maybeShown('Width of the rectangular duct', 'cross_length', 'width'),
-  depth_m: maybeShown('Depth of the rectangular duct', 'cross_length', 'depth'),
-  drawn_length_m: shown('Centreline length between the nodes, wells left out', 'length', 'drawn'),
-  length_m: shown('Duct length: what resists flow after the joining rules', 'length', 'duct'),
-  joint_length_m: shown('Signed length that resolved joints add, within length_m', 'length', 'joints'),
-  resistance_pa_s_m3: maybeShown('Pressure drop per flow', 'resistance', 'resistance'),
-  flow_m3_s: maybeShown('Flow, positive from → to', 'flow', 'flow'),
-  pressure_drop_pa: maybeShown('Pressure at from minus pressure at to', 'pressure', 'drop'),
-  mean_velocity_m_s: maybeShown('Flow over cross-section, magnitude', 'velocity', 'v mean'),
-  peak_velocity_m_s: maybeShown('Velocity on the axis, magnitude', 'velocity', 'v peak'),
-  reynolds: maybeShown('Reynolds number on the hydraulic diameter', 'number', 'Re'),
+  width_m: across('Width of the rectangular duct', 'width'),
+  depth_m: across('Depth of the rectangular duct', 'depth'),
+  drawn_length_m: length('Centreline length between the nodes, wells left out', 'drawn'),
+  length_m: length('Duct length: what resists flow after the joining rules', 'duct'),
+  joint_length_m: length('Signed length that resolved joints add, within length_m', 'joints'),
+  resistance_pa_s_m3: resistance,
+  flow_m3_s: flow('Flow, positive from → to', 'flow'),
+  pressure_drop_pa: pressure('Pressure at from minus pressure at to', 'drop'),
+  mean_velocity_m_s: velocity('Flow over cross-section, magnitude', 'v mean'),
+  peak_velocity_m_s: velocity('Velocity on the axis, magnitude', 'v peak'),
+  reynolds: quantity('number')('Reynolds number on the hydraulic diameter', 'Re'),
   dean: maybe('Dean number at the tightest bend; null on a straight reach'),
   entrance_length_m: maybe('Length over which the velocity profile develops'),
-  wall_shear_floor_mean_pa: maybeShown(
-    'Wall shear on the floor, mean over its width',
-    'wall_shear',
-    'floor mean',
-  ),
-  wall_shear_floor_peak_pa: maybeShown('Wall shear on the floor, in its middle', 'wall_shear', 'floor peak'),
-  wall_shear_side_mean_pa: maybeShown(
-    'Wall shear on a side, mean over its height',
-    'wall_shear',
-    'side mean',
-  ),
-  wall_shear_side_peak_pa: maybeShown('Wall shear on a side, in its middle', 'wall_shear', 'side peak'),
-  floor_share_inside_window: maybeShown(
+  wall_shear_floor_mean_pa: floorMean,
+  wall_shear_floor_peak_pa: floorPeak,
+  wall_shear_side_mean_pa: shear('Wall shear on a side, mean over its height', 'side mean'),
+  wall_shear_side_peak_pa: shear('Wall shear on a side, in its middle', 'side peak'),
+  floor_share_inside_window: quantity('share')(
     'Share of the floor width whose shear lies in the wall_shear window; null without window',
-    'share',
     'floor in',
     'window',
   ),
-  residence_time_s: maybeShown('Volume over flow', 'residence_time', 'time mean'),
-  fastest_time_s: maybeShown('Length over peak velocity', 'residence_time', 'fastest'),
+  residence_time_s: time('Volume over flow', 'time mean'),
+  fastest_time_s: time('Length over peak velocity', 'fastest'),
   volume_m3: maybe('Width × depth × length'),
-  joint_flow_share: maybeShown(
+  joint_flow_share: quantity('bound')(
     'How far joints that were not resolved could move the flow, as a share of it',
-    'bound',
     'joints move',
     'it by ±',
   ),
@@ -144,20 +139,16 @@ export const reachSchema = v.strictObject({
 export const segmentSchema = v.strictObject({
   name: text,
   reach: text,
-  x1_mm: shown('Start, drawing coordinates in mm', 'drawn_mm', 'x₁'),
-  y1_mm: shown('Start, drawing coordinates in mm, y down', 'drawn_mm', 'y₁'),
-  x2_mm: shown('End, drawing coordinates in mm', 'drawn_mm', 'x₂'),
-  y2_mm: shown('End, drawing coordinates in mm, y down', 'drawn_mm', 'y₂'),
-  length_m: shown('Duct length', 'length', 'length'),
-  resistance_pa_s_m3: maybeShown('Pressure drop per flow', 'resistance', 'resistance'),
-  pressure_drop_pa: maybeShown('Pressure at the start minus pressure at the end', 'pressure', 'drop'),
-  wall_shear_floor_mean_pa: maybeShown(
-    'Wall shear on the floor, mean over its width',
-    'wall_shear',
-    'floor mean',
-  ),
-  wall_shear_floor_peak_pa: maybeShown('Wall shear on the floor, in its middle', 'wall_shear', 'floor peak'),
-  residence_time_s: maybeShown('Volume over flow', 'residence_time', 'time'),
+  x1_mm: drawnMm('Start, drawing coordinates in mm', 'x₁'),
+  y1_mm: drawnMm('Start, drawing coordinates in mm, y down', 'y₁'),
+  x2_mm: drawnMm('End, drawing coordinates in mm', 'x₂'),
+  y2_mm: drawnMm('End, drawing coordinates in mm, y down', 'y₂'),
+  length_m: length('Duct length', 'length'),
+  resistance_pa_s_m3: resistance,
+  pressure_drop_pa: pressure('Pressure at the start minus pressure at the end', 'drop'),
+  wall_shear_floor_mean_pa: floorMean,
+  wall_shear_floor_peak_pa: floorPeak,
+  residence_time_s: time('Volume over flow', 'time'),
 });
 
 export const findingSchema = v.strictObject({
@@ -191,6 +182,8 @@ export const balanceSchema = v.strictObject({
   worst_node: v.nullable(text),
 });
 
+const end = maybe('Open ends are null');
+
 export const pumpSchema = v.strictObject({
   targets: v.array(
     v.strictObject({
@@ -219,10 +212,10 @@ export const pumpSchema = v.strictObject({
       range: v.exactOptional(
         v.pipe(
           v.strictObject({
-            supply_pressure_min_pa: maybe('Open ends are null'),
-            supply_pressure_max_pa: maybe('Open ends are null'),
-            flow_min_m3_s: maybe('Open ends are null'),
-            flow_max_m3_s: maybe('Open ends are null'),
+            supply_pressure_min_pa: end,
+            supply_pressure_max_pa: end,
+            flow_min_m3_s: end,
+            flow_max_m3_s: end,
           }),
           v.description('For a window: what of this port alone keeps it'),
         ),
@@ -230,6 +223,14 @@ export const pumpSchema = v.strictObject({
     }),
   ),
 });
+
+/** Which number is spoken of. */
+const output = {
+  on: v.picklist(['port', 'reach', 'channel', 'node']),
+  name: text,
+  quantity: text,
+  unit: text,
+};
 
 export const spreadSchema = v.strictObject({
   draws: count('Draws in the sample'),
@@ -240,10 +241,7 @@ export const spreadSchema = v.strictObject({
   seed: v.pipe(v.number(), v.integer()),
   outputs: v.array(
     v.strictObject({
-      on: v.picklist(['port', 'reach', 'channel', 'node']),
-      name: text,
-      quantity: text,
-      unit: text,
+      ...output,
       nominal: maybe('Without any tolerance'),
       mean: maybe('Of the sample'),
       sd: maybe('Standard deviation of the sample'),
@@ -278,10 +276,7 @@ export const spreadSchema = v.strictObject({
   not_judged: v.array(text),
   worst_corner: v.nullable(
     v.strictObject({
-      on: v.picklist(['port', 'reach', 'channel', 'node']),
-      name: text,
-      quantity: text,
-      unit: text,
+      ...output,
       limit: number('The limit with least room, in standard deviations'),
       room_sd: number('Standard deviations between the nominal value and the limit; below 0 beyond it'),
       value: maybe('Of the number with every tolerance at its worst end'),

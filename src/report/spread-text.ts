@@ -2,7 +2,7 @@ import type { Show } from '../runsheet/shown.ts';
 import type { Spread, SpreadOutput } from '../spread/types.ts';
 import { type Column, words } from './columns.ts';
 import { cleanText, wrapText } from './plain-text.ts';
-import type { Report, ReportedCase } from './report.ts';
+import { ofCase, type Report, type ReportedCase } from './report.ts';
 import { cornerText, moves, remarks, spreadColumns, toleranceText, yieldText } from './spread-rows.ts';
 import { textTable } from './text-table.ts';
 
@@ -17,7 +17,8 @@ export function spreadText(report: Report, columns: number): string {
     .join('');
 }
 
-function caseLines({ name, spread, show }: ReportedCase, width: number): readonly string[] {
+function caseLines(one: ReportedCase, width: number): readonly string[] {
+  const { spread, show } = one;
   if (spread === undefined) return [];
   const { causes, draws, seed, outputs } = spread;
   const wrap = (text: string): string[] => wrapText(cleanText(text), width);
@@ -26,7 +27,7 @@ function caseLines({ name, spread, show }: ReportedCase, width: number): readonl
   const listed = moving.filter((output) => first.includes(output));
   const still = outputs.length - moving.length;
   return [
-    ...wrap(`spread${name === null ? '' : `, case ${name}`}: ${draws} draws, seed ${seed}`),
+    ...wrap(`${ofCase('spread', one)}: ${draws} draws, seed ${seed}`),
     ...wrap(`tolerances: ${causes.map((cause) => `${cause.key} ${toleranceText(cause, show)}`).join('; ')}`),
     ...wrap(yieldText(spread)),
     ...[cornerText(spread, show) ?? []].flat().flatMap(wrap),

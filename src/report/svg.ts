@@ -7,7 +7,7 @@ import { cleanText, displayWidth } from './plain-text.ts';
 import { AT_FOUND_SETTINGS } from './pump-rows.ts';
 import { quantityTexts } from './quantities.ts';
 import type { MapQuantity } from './reach-values.ts';
-import type { ReportedCase } from './report.ts';
+import { ofCase, type ReportedCase } from './report.ts';
 import { portQuantity, reachQuantity } from './result-schema.ts';
 import { verdictLine } from './verdict-line.ts';
 
@@ -39,8 +39,7 @@ export function svgPicture(one: ReportedCase, options: SvgOptions): string {
   });
   const file = cleanText(one.network.chip.file);
   const title = [
-    file,
-    one.name === null ? '' : `, case ${cleanText(one.name)}`,
+    ofCase(file, one),
     `: ${MAP_QUANTITIES[options.quantity].title}`,
     one.pump === undefined ? '' : `, ${AT_FOUND_SETTINGS}`,
   ].join('');

@@ -4,7 +4,7 @@ import { figures, words } from './columns.ts';
 import { cleanText, clipText, displayWidth, padText, wrapText } from './plain-text.ts';
 import { valueColumns } from './quantities.ts';
 import { hasWindow, outsideWindows, reachesThatMatter, windowTexts } from './reach-values.ts';
-import type { Report, ReportedCase } from './report.ts';
+import { ofCase, type Report, type ReportedCase } from './report.ts';
 import type { FindingRow } from './result-rows.ts';
 import { portQuantity, reachQuantity } from './result-schema.ts';
 import { textTable } from './text-table.ts';
@@ -26,11 +26,7 @@ export function terminalSummary(report: Report, options: TerminalOptions): strin
   const paint = picocolors.createColors(options.colour);
   const width = Math.max(40, Math.min(100, options.columns));
   const lines = report.cases.flatMap((one) => {
-    const title = [
-      cleanText(report.result.layout.file),
-      one.name === null ? '' : `, case ${cleanText(one.name)}`,
-    ].join('');
-    const verdict = verdictLines(one, title, width, paint);
+    const verdict = verdictLines(one, ofCase(cleanText(report.result.layout.file), one), width, paint);
     return options.quiet ? verdict : [...verdict, ...caseLines(one, width, paint)];
   });
   if ('cases' in report.result) lines.push(...wrapText(casesLine(report), width));

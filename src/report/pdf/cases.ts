@@ -11,7 +11,7 @@ import { BODY, type PageContext, SMALL } from './context.ts';
 import { drawingText } from './drawing-text.ts';
 import { factsHeight, writeFacts } from './facts.ts';
 import { writeFoundBox } from './found-box.ts';
-import { FACTS, inputFacts } from './input-facts.ts';
+import { inputFacts } from './input-facts.ts';
 import type { Element, Paper } from './paper.ts';
 import { writePressureMap } from './pressure-map.ts';
 import { SIGN_HEIGHT, writeBanner, writeSignatures } from './sign-off.ts';
@@ -31,9 +31,7 @@ export function writeCases(contexts: readonly PageContext[]): void {
   if (contexts.length < 2) return;
   const [{ paper, report, one }] = contexts;
   const { cases } = report;
-  paper.newPage('portrait');
-  const section = paper.section();
-  paper.heading(section, 1, 'Cases compared');
+  const section = paper.chapter('Cases compared', 'portrait');
   const { sheet } = one.network.chip;
   const drawing = [sheet?.title ?? '', sheet === null ? '' : drawingText(sheet.drawing)];
   paper.paragraph(
@@ -59,12 +57,12 @@ export function writeCases(contexts: readonly PageContext[]): void {
   for (let from = 0; from < cases.length; from += CASES_ABREAST)
     writeTable(paper, section, cases.slice(from, from + CASES_ABREAST));
   const facts = inputFacts(contexts[0]).filter(([key]) => !OF_EACH_CASE.has(key));
-  const height = factsHeight(paper, facts, { ...FACTS, width: paper.width }) + SIGN_HEIGHT + 24;
+  const height = factsHeight(paper, facts) + SIGN_HEIGHT + 24;
   if (paper.y + height > paper.bottom) paper.newPage();
   writePicture(contexts, section, height);
   paper.y = Math.max(paper.y, paper.bottom - height);
   paper.heading(section, 3, 'What went in');
-  writeFacts(paper, section, facts, FACTS);
+  writeFacts(paper, section, facts);
   writeSignatures(paper, section);
 }
 

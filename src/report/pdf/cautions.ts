@@ -2,8 +2,7 @@ import { BODY, type PageContext } from './context.ts';
 
 /** What the person who works with the chip must know, whatever the verdict. */
 export function writeCautions({ paper }: PageContext): void {
-  const section = paper.start('portrait', 110);
-  paper.heading(section, 1, 'Cautions');
+  const section = paper.chapter('Cautions', 'portrait', 110);
   for (const text of CAUTIONS) paper.paragraph(section, text, BODY);
 }
 

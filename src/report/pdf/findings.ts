@@ -17,9 +17,7 @@ const PICTURE_MM = { width: 58, height: 40 } as const;
 export function writeFindings(context: PageContext): void {
   const { paper, one } = context;
   const { findings, notRun } = one.findings;
-  paper.newPage('portrait');
-  const section = paper.section();
-  paper.heading(section, 1, 'Findings');
+  const section = paper.chapter('Findings', 'portrait');
   paper.paragraph(
     section,
     `${verdictLine(one.part.verdict, one.part.counts)}. Numbers are those on the map of ${one.name === null ? 'page 1' : 'this case'}; places are in drawing coordinates, mm, y down.`,

@@ -3,7 +3,7 @@ import { words } from '../columns.ts';
 import { cleanText } from '../plain-text.ts';
 import { quantityColumns } from '../quantities.ts';
 import { hasWindow, outsideWindows, reachesThatMatter, windowTexts } from '../reach-values.ts';
-import { casesLeftOut } from '../report.ts';
+import { casesLeftOut, ofCase } from '../report.ts';
 import type { PortRow, ReachRow } from '../result-rows.ts';
 import { reachQuantity } from '../result-schema.ts';
 import { plural, verdictCounts } from '../verdict-line.ts';
@@ -11,7 +11,7 @@ import { BODY, BODY_BOLD, type PageContext, SMALL } from './context.ts';
 import { drawingText } from './drawing-text.ts';
 import { factsHeight, writeFacts } from './facts.ts';
 import { writeFoundBox } from './found-box.ts';
-import { FACTS, inputFacts } from './input-facts.ts';
+import { inputFacts } from './input-facts.ts';
 import type { Element } from './paper.ts';
 import { portColumns } from './port-columns.ts';
 import { writePressureMap } from './pressure-map.ts';
@@ -30,7 +30,7 @@ export function writeFrontPage(context: PageContext): void {
   const section = paper.section();
   writeVerdict(context, section);
   const facts = inputFacts(context);
-  const below = factsHeight(paper, facts, { ...FACTS, width: paper.width }) + SIGN_HEIGHT + 34;
+  const below = factsHeight(paper, facts) + SIGN_HEIGHT + 34;
   writePressureMap(context, section, below);
   // ports get what is left above the inputs, and continue overleaf
   const rowsHere = Math.max(2, Math.floor((paper.bottom - below - paper.y - 40) / 10));
@@ -40,7 +40,7 @@ export function writeFrontPage(context: PageContext): void {
   if (here.length === ports.length) writeReachesThatMatter(context, section, paper.bottom - below - paper.y);
   paper.y = Math.max(paper.y, paper.bottom - below + 6);
   paper.heading(section, 3, 'What went in');
-  writeFacts(paper, section, facts, FACTS);
+  writeFacts(paper, section, facts);
   // with cases there is one verdict, signed on page 1
   if (context.report.cases.length === 1) writeSignatures(paper, section);
   if (here.length < ports.length) {
@@ -52,10 +52,7 @@ export function writeFrontPage(context: PageContext): void {
 function writeVerdict({ paper, report, one }: PageContext, section: Element): void {
   const { sheet } = one.network.chip;
   const { part } = one;
-  const title = [
-    sheet?.title ?? report.result.layout.file,
-    one.name === null ? '' : `, case ${one.name}`,
-  ].join('');
+  const title = ofCase(sheet?.title ?? report.result.layout.file, one);
   paper.tagged(section, 'H1', () => {
     const style = { size: 14, weight: 'bold' } as const;
     paper.put(paper.clip(title, paper.width, style), paper.left, paper.y, style);

@@ -12,8 +12,7 @@ import { drawTable } from './table.ts';
 export function writeHandCheck(context: PageContext): void {
   const { paper, one } = context;
   const row = reachToCheck(one);
-  const section = paper.start('portrait', 330);
-  paper.heading(section, 1, 'Hand check');
+  const section = paper.chapter('Hand check', 'portrait', 330);
   if (row === null) {
     paper.paragraph(section, 'No reach has a known flow, so there is nothing to check by hand.', BODY);
     return;

@@ -8,8 +8,7 @@ import { drawTable } from './table.ts';
 /** Where to drill or punch: from the lower left corner of the chip edge, and in drawing coordinates. */
 export function writeHoles({ paper, one, geometry }: PageContext): void {
   const { chip } = one.network;
-  const section = paper.start('portrait', 120);
-  paper.heading(section, 1, 'Holes');
+  const section = paper.chapter('Holes', 'portrait', 120);
   if (chip.ports.length === 0) {
     paper.paragraph(section, 'The layout has no holes.', BODY);
     return;

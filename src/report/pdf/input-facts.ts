@@ -5,9 +5,6 @@ import { jointsText } from '../joints-text.ts';
 import { plural } from '../verdict-line.ts';
 import { depthFrom, isoDate, type PageContext } from './context.ts';
 
-/** How writeFacts sets them, the same on all pages. */
-export const FACTS = { keyWidth: 62, size: 6.5 } as const;
-
 /** What went in: files with their checksums, fluid, depths, size, joints, and what was not read. */
 export function inputFacts({ report, one, date }: PageContext): readonly (readonly [string, string])[] {
   const { chip } = one.network;

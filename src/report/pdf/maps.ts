@@ -8,9 +8,7 @@ const TEXT_POINTS = 44;
 
 /** Maps of wall shear, flow and residence time, as many on a page as fit: three of a wide chip, one of a tall one. */
 export function writeMaps({ paper, one, geometry, measure, readable }: PageContext): void {
-  paper.newPage('portrait');
-  const section = paper.section();
-  paper.heading(section, 1, 'Maps');
+  const section = paper.chapter('Maps', 'portrait');
   paper.paragraph(section, "Numbers beside names are in the legend's unit; all are in the tables.", SMALL);
   const heightMm = mapHeightMm(paper.bottom - paper.y, paper.width, geometry.bounds);
   for (const quantity of ['shear', 'flow', 'residence'] as const) {

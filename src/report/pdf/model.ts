@@ -12,8 +12,7 @@ import { drawTable } from './table.ts';
 /** The model in words, its formulas with their sources, and the depths and limits in force with where each came from. */
 export function writeModel({ paper, one }: PageContext): void {
   const { chip } = one.network;
-  const section = paper.start('portrait', 500);
-  paper.heading(section, 1, 'Model');
+  const section = paper.chapter('Model', 'portrait', 500);
   for (const text of modelTexts(chip)) paper.paragraph(section, text, BODY);
   paper.y += 4;
   paper.heading(section, 2, 'Formulas and sources');

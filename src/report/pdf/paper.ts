@@ -1,6 +1,6 @@
 import PDFDocument from 'pdfkit';
 import { cleanText, wrapMeasured } from '../plain-text.ts';
-import { glyphCoverage } from './glyph-coverage.ts';
+import { type EmbeddedFont, embeddedFont } from './embedded-font.ts';
 import { layOutPlainly } from './plain-layout.ts';
 import { visualChunks } from './visual-order.ts';
 
@@ -38,7 +38,7 @@ export class Paper {
   /** Next free height on the page, from the top. */
   y = MARGIN;
   private readonly size: readonly [number, number];
-  private readonly has: Record<Weight, (codePoint: number) => boolean>;
+  private readonly embedded: Record<Weight, EmbeddedFont>;
   private readonly root: Element;
   private readonly chunks: Uint8Array[] = [];
   /** Widths of texts at size 1, by weight. */
@@ -71,11 +71,11 @@ export class Paper {
     // pdfkit's own type wants a Buffer-like source; a Uint8Array is what it reads
     this.doc.registerFont('regular', fonts.regular as PDFKit.Mixins.PDFFontSource);
     this.doc.registerFont('bold', fonts.bold as PDFKit.Mixins.PDFFontSource);
-    for (const weight of ['regular', 'bold'] as const) {
-      this.doc.font(weight);
-      layOutPlainly(this.doc);
-    }
-    this.has = { regular: glyphCoverage(fonts.regular), bold: glyphCoverage(fonts.bold) };
+    const embed = (weight: Weight): EmbeddedFont => {
+      layOutPlainly(this.doc.font(weight));
+      return embeddedFont(this.doc);
+    };
+    this.embedded = { regular: embed('regular'), bold: embed('bold') };
     this.root = this.doc.struct('Document');
     this.doc.addStructure(this.root);
   }
@@ -110,11 +110,13 @@ export class Paper {
     this.y = this.top;
   }
 
-  /** A part of the document at the top of a page, or below the last one where at least `height` is left on a page of this kind. */
-  start(orientation: 'portrait' | 'landscape', height: number): Element {
+  /** A part of the document with its title at the top of a page, or below the last one where `height` is left on a page of this kind. */
+  chapter(title: string, orientation: 'portrait' | 'landscape', height = Number.POSITIVE_INFINITY): Element {
     if (this.orientation !== orientation || this.y + height > this.bottom) this.newPage(orientation);
     else if (this.y > this.top) this.y += 10;
-    return this.section();
+    const section = this.section();
+    this.heading(section, 1, title);
+    return section;
   }
 
   /** Turns to a new page when less than this is left. */
@@ -157,10 +159,10 @@ export class Paper {
   }
 
   /** Heading at the left margin, with a bookmark for levels 1 and 2. */
-  heading(parent: Element, level: 1 | 2 | 3, text: string, bookmark = text): void {
+  heading(parent: Element, level: 1 | 2 | 3, text: string): void {
     const size = level === 1 ? 13 : level === 2 ? 10 : 8.5;
     this.need(size * 1.3 + 30);
-    if (level === 1) this.bookmark(bookmark);
+    if (level === 1) this.bookmark(text);
     this.tagged(parent, `H${level}`, () => {
       const style = { size, weight: 'bold' } as const;
       this.put(this.clip(text, this.width, style), this.left, this.y, style);
@@ -180,13 +182,18 @@ export class Paper {
     at: { readonly x?: number; readonly width?: number } = {},
   ): void {
     const x = at.x ?? this.left;
-    const lines = this.wrap(text, at.width ?? this.right - x, style);
+    this.lines(parent, 'P', this.wrap(text, at.width ?? this.right - x, style), x, style);
+    this.y += 2;
+  }
+
+  /** Lines of readable text below each other. Turns pages between them, and tags what stands on each. */
+  lines(parent: Element, type: 'P' | 'TD', lines: readonly string[], x: number, style: TextStyle): void {
     const step = lineHeight(style);
     for (let done = 0; done < lines.length; ) {
       this.need(step);
       const room = Math.max(1, Math.floor((this.bottom - this.y) / step + 1e-9));
       const part = lines.slice(done, done + room);
-      this.tagged(parent, 'P', () => {
+      this.tagged(parent, type, () => {
         for (const line of part) {
           this.put(line, x, this.y, style);
           this.y += step;
@@ -194,7 +201,6 @@ export class Paper {
       });
       done += part.length;
     }
-    this.y += 2;
   }
 
   /** One line of readable text with its top left corner at x, y. Not tagged by itself. */
@@ -212,6 +218,10 @@ export class Paper {
 
   putRight(text: string, right: number, y: number, style: TextStyle): void {
     this.put(text, right - this.widthOf(text, style), y, style);
+  }
+
+  putCentred(text: string, x: number, y: number, style: TextStyle): void {
+    this.put(text, x - this.widthOf(text, style) / 2, y, style);
   }
 
   /** Width of readable text. */
@@ -235,7 +245,7 @@ export class Paper {
     let readable = '';
     for (const character of cleanText(text)) {
       const codePoint = character.codePointAt(0) ?? 0;
-      readable += this.has[weight](codePoint)
+      readable += this.embedded[weight].font.hasGlyphForCodePoint(codePoint)
         ? character
         : `[U+${codePoint.toString(16).toUpperCase().padStart(4, '0')}]`;
     }
@@ -268,7 +278,7 @@ export class Paper {
   }
 
   /** Head and foot lines of every page, then the bytes. */
-  finish(
+  async finish(
     head: string,
     foot: (page: number, pages: number) => readonly [string, string],
   ): Promise<Uint8Array> {
@@ -286,11 +296,10 @@ export class Paper {
       this.putRight(page, this.right, doc.page.height - MARGIN + 8, style);
       doc.endMarkedContent();
     }
-    return new Promise((resolve, reject) => {
-      doc.on('error', reject);
-      doc.on('end', () => resolve(joined(this.chunks)));
-      doc.end();
+    await new Promise((resolve, reject) => {
+      doc.on('error', reject).on('end', resolve).end();
     });
+    return new Uint8Array(await new Blob(this.chunks).arrayBuffer());
   }
 
   private use({ size, weight = 'regular' }: TextStyle): void {
@@ -301,14 +310,4 @@ export class Paper {
 /** Height of a line of text: the font's ascender to descender, and a little. */
 export function lineHeight({ size }: TextStyle): number {
   return 1.26 * size;
-}
-
-function joined(chunks: readonly Uint8Array[]): Uint8Array {
-  const bytes = new Uint8Array(chunks.reduce((sum, { length }) => sum + length, 0));
-  let offset = 0;
-  for (const chunk of chunks) {
-    bytes.set(chunk, offset);
-    offset += chunk.length;
-  }
-  return bytes;
 }

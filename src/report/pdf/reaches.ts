@@ -17,9 +17,7 @@ export const REACHES_OF_MANY = 500;
 export function writeReaches({ paper, one }: PageContext): void {
   const { network } = one;
   if (network.reachCount === 0) return;
-  paper.newPage('landscape');
-  const section = paper.section();
-  paper.heading(section, 1, 'Reaches');
+  const section = paper.chapter('Reaches', 'landscape');
   paper.paragraph(section, LEGEND, SMALL);
   const order = byChannel(one).subarray(0, network.reachCount <= REACH_BOUND ? REACH_BOUND : REACHES_OF_MANY);
   const rows = Array.from(order, (reach) => one.part.reaches.at(reach));

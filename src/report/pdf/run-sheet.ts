@@ -4,8 +4,7 @@ import { lineHeight } from './paper.ts';
 /** The run sheet in full, with line numbers, as it was read. */
 export function writeRunSheet({ paper, report, one }: PageContext): void {
   const { sheet } = one.network.chip;
-  const section = paper.start('portrait', 200);
-  paper.heading(section, 1, 'Run sheet');
+  const section = paper.chapter('Run sheet', 'portrait', 200);
   if (sheet === null) {
     paper.paragraph(section, 'The chip was checked without a run sheet.', BODY);
     return;

@@ -24,8 +24,7 @@ export function writeSegments({ paper, one }: PageContext): void {
     );
     return;
   }
-  const section = paper.start('landscape', 150);
-  paper.heading(section, 1, 'Segments');
+  const section = paper.chapter('Segments', 'landscape', 150);
   paper.paragraph(section, LEGEND, SMALL);
   const rows = printedRows(one);
   const columns = quantityColumns(segmentQuantity, rows, one.show);

@@ -1,7 +1,7 @@
 import { formatShare, type Show } from '../../runsheet/shown.ts';
 import type { Spread, SpreadOutput } from '../../spread/types.ts';
 import { words } from '../columns.ts';
-import { cleanText } from '../plain-text.ts';
+import { ofCase } from '../report.ts';
 import { type DistributionChart, distributionChart } from '../spread-charts.ts';
 import {
   cornerText,
@@ -13,8 +13,20 @@ import {
   toleranceText,
   yieldText,
 } from '../spread-rows.ts';
+import {
+  BAND,
+  type Field,
+  fieldOf,
+  INK,
+  LABEL,
+  paintEnds,
+  paintField,
+  paintTick,
+  TITLE,
+  writeCharts,
+} from './chart.ts';
 import { BODY, BODY_BOLD, type PageContext, SMALL } from './context.ts';
-import type { Element, Paper, TextStyle } from './paper.ts';
+import type { Element, Paper } from './paper.ts';
 import { drawTable } from './table.ts';
 
 const MOST_CHARTS = 24;
@@ -25,9 +37,7 @@ const MOST_BARS = 20;
 export function writeSpread({ paper, one }: PageContext): void {
   const { spread, show } = one;
   if (spread === undefined) return;
-  paper.newPage('portrait');
-  const section = paper.section();
-  paper.heading(section, 1, one.name === null ? 'Spread' : `Spread, case ${cleanText(one.name)}`);
+  const section = paper.chapter(ofCase('Spread', one), 'portrait');
   if (spread.draws < spread.asked) {
     const text = `Stopped before its end: ${spread.draws} of ${spread.asked} draws were made.`;
     paper.paragraph(section, text, BODY_BOLD);
@@ -69,13 +79,8 @@ function writeTolerances(paper: Paper, section: Element, { causes }: Spread, sho
 
 /* ---------- causes ---------- */
 
-const INK = '#222222';
 const BAR = '#1b4965';
-const BAND = '#dcebd5';
-const BAND_EDGE = '#5c8a48';
 const CURVE = '#b05a00';
-const LABEL: TextStyle = { size: 6.2 };
-const TITLE: TextStyle = { size: 7, weight: 'bold' };
 
 function writeCauses(paper: Paper, section: Element, spread: Spread): void {
   const overall = overallShares(spread);
@@ -124,8 +129,6 @@ function rounded(share: number): number {
 /* ---------- distributions ---------- */
 
 const CHART_HEIGHT = 104;
-const CHART_GAP = 12;
-const PER_ROW = 3;
 
 function writeDistributions(paper: Paper, section: Element, spread: Spread, show: Show): void {
   const charts: DistributionChart[] = [];
@@ -142,16 +145,14 @@ function writeDistributions(paper: Paper, section: Element, spread: Spread, show
     'Bars: the draws. Line: first order. Shaded: what is asked. Dashed: the nominal value. Those with least room first.',
     SMALL,
   );
-  const width = (paper.width - (PER_ROW - 1) * CHART_GAP) / PER_ROW;
-  charts.forEach((chart, i) => {
-    const column = i % PER_ROW;
-    if (column === 0) paper.need(CHART_HEIGHT + 6);
-    const x = paper.left + column * (width + CHART_GAP);
-    paper.tagged(section, 'Figure', () => paintDistribution(paper, chart, x, paper.y, width), {
-      alt: chart.alt,
-    });
-    if (column === PER_ROW - 1 || i === charts.length - 1) paper.y += CHART_HEIGHT + 6;
-  });
+  writeCharts(
+    paper,
+    section,
+    charts,
+    { perRow: 3, gap: 12, height: CHART_HEIGHT + 6 },
+    (chart, x, y, width) => paintDistribution(paper, chart, x, y, width),
+    ({ alt }) => alt,
+  );
   if (more > 0) paper.paragraph(section, `… and ${more} more, in the table.`, SMALL);
 }
 
@@ -179,17 +180,29 @@ function paintDistribution(
   y: number,
   width: number,
 ): void {
-  const { doc } = paper;
   const top = y + 22;
   const bottom = y + CHART_HEIGHT - 16;
   const [left, right] = [x + 4, x + width - 4];
-  const toX = (value: number): number =>
-    left + ((value - chart.low) / (chart.high - chart.low)) * (right - left);
-  const toY = (height: number): number => bottom - height * (bottom - top) * 0.94;
+  const field = fieldOf({ left, right, top, bottom }, chart);
   paper.put(paper.clip(chart.title, width, TITLE), x, y, TITLE);
   paper.put(paper.clip(chart.subtitle, width, LABEL), x, y + 10, LABEL);
-  doc.save();
-  doc.rect(left, top, right - left, bottom - top).clip();
+  paintField(paper, field, 0.4, () => paintBars(paper, chart, field));
+  const unitLeft = right - paper.widthOf(chart.unit, LABEL);
+  for (const { at, text } of chart.ticks) {
+    paintTick(paper, field.toX(at), bottom, 0, 2, 0.4);
+    const textWidth = paper.widthOf(text, LABEL);
+    const textLeft = field.toX(at) - textWidth / 2;
+    // the unit stands at the end of the axis
+    if (textLeft + textWidth < unitLeft - 3) paper.put(text, textLeft, bottom + 3, LABEL);
+  }
+  paper.put(chart.unit, unitLeft, bottom + 3, LABEL);
+}
+
+/** What is cut off at the field: the window, the draws, first order, the nominal value. */
+function paintBars(paper: Paper, chart: DistributionChart, field: Field): void {
+  const { doc } = paper;
+  const { left, right, top, bottom, toX } = field;
+  const toY = (height: number): number => bottom - height * (bottom - top) * 0.94;
   const { min, max } = chart.window;
   const from = min === null ? left : Math.max(left, toX(min));
   const to = max === null ? right : Math.min(right, toX(max));
@@ -205,43 +218,9 @@ function paintDistribution(
     else doc.lineTo(at, toY(height));
   });
   if (chart.curve.length > 0) doc.lineWidth(0.9).lineJoin('round').strokeColor(CURVE).stroke();
-  for (const end of [min, max]) {
-    if (end === null) continue;
-    doc.moveTo(toX(end), top).lineTo(toX(end), bottom).lineWidth(0.8).strokeColor(BAND_EDGE).stroke();
-  }
+  paintEnds(paper, field, chart.window, 0.8);
   doc.moveTo(toX(chart.nominal), top).lineTo(toX(chart.nominal), bottom).dash(2, { space: 2 });
   doc.lineWidth(0.7).strokeColor(INK).stroke().undash();
-  doc.restore();
-  doc
-    .rect(left, top, right - left, bottom - top)
-    .lineWidth(0.4)
-    .strokeColor(INK)
-    .stroke();
-  paintAxis(paper, chart, toX, bottom, right);
-}
-
-function paintAxis(
-  paper: Paper,
-  { ticks, unit }: DistributionChart,
-  toX: (value: number) => number,
-  bottom: number,
-  right: number,
-): void {
-  const { doc } = paper;
-  const unitLeft = right - paper.widthOf(unit, LABEL);
-  for (const { at, text } of ticks) {
-    doc
-      .moveTo(toX(at), bottom)
-      .lineTo(toX(at), bottom + 2)
-      .lineWidth(0.4)
-      .strokeColor(INK)
-      .stroke();
-    const textWidth = paper.widthOf(text, LABEL);
-    const textLeft = toX(at) - textWidth / 2;
-    // the unit stands at the end of the axis
-    if (textLeft + textWidth < unitLeft - 3) paper.put(text, textLeft, bottom + 3, LABEL);
-  }
-  paper.put(unit, unitLeft, bottom + 3, LABEL);
 }
 
 /* ---------- numbers ---------- */
