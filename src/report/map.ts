@@ -1,3 +1,4 @@
+import { countText } from '../findings/words.ts';
 import { formatNumber } from '../runsheet/shown.ts';
 import { clippedLine } from './clipped-line.ts';
 import { colourScale, niceStep } from './colour-scale.ts';
@@ -136,8 +137,8 @@ function scaleBarOf({ frame, area }: Figure, options: MapOptions): ScaleBar {
 /** What stands under a map: how it is seen, and how many names found no room. */
 export function mapNotes({ caption, unlabelled, unnamedPorts }: MapDrawing): string {
   const missing = [
-    unnamedPorts === 0 ? '' : `${unnamedPorts} ${unnamedPorts === 1 ? 'port' : 'ports'}`,
-    unlabelled === 0 ? '' : `${unlabelled} ${unlabelled === 1 ? 'reach' : 'reaches'}`,
+    unnamedPorts === 0 ? '' : countText(unnamedPorts, 'port'),
+    unlabelled === 0 ? '' : countText(unlabelled, 'reach', 'reaches'),
   ].filter((text) => text !== '');
   return missing.length === 0 ? caption : `${caption} No room for the names of ${missing.join(' and ')}.`;
 }

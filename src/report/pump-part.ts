@@ -35,7 +35,7 @@ export function pumpPartOf({ chip }: Network, { targets }: FoundSettings): PumpP
   };
 }
 
-export const SI_UNITS = {
+const SI_UNITS = {
   flow: 'm³/s',
   wall_shear: 'Pa',
   velocity: 'm/s',

@@ -1,4 +1,5 @@
 import type { FoundTarget } from '../solve/targets.ts';
+import { textOfCases } from './case-text.ts';
 import { words } from './columns.ts';
 import { cleanText, displayWidth, wrapText } from './plain-text.ts';
 import {
@@ -15,11 +16,7 @@ import { textTable } from './text-table.ts';
 
 /** What the command pump adds to the summary of a check: each target with what is reached, and each port's settings. Ends with a line end. */
 export function pumpText(report: Report, columns: number): string {
-  const width = Math.max(40, Math.min(100, columns));
-  return report.cases
-    .filter(({ pump }) => pump !== undefined)
-    .map((one) => `${caseLines(one, width).join('\n')}\n\n`)
-    .join('');
+  return textOfCases(report, 'pump', columns, caseLines);
 }
 
 /** The table of settings. Where the limits do not fit into it, its cells say whether they are kept, and lines below what they are. */

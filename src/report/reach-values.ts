@@ -121,3 +121,16 @@ export function windowTexts({ settings }: Channel, show: Show): readonly string[
   if (flow !== null) texts.push(`flow ${windowText(show, 'flow', flow, STYLE)}`);
   return texts;
 }
+
+/** What a table says of a reach's windows: "outside: shear 0.05 to 0.5 Pa"; nothing without a window. */
+export function windowCell(one: ReportedCase): (row: Pick<ReachRow, 'channel' | 'name'>) => string {
+  const channels = new Map(
+    one.network.chip.channels.filter(hasWindow).map((channel) => [channel.name, channel]),
+  );
+  const outside = outsideWindows(one);
+  return (row) => {
+    const channel = channels.get(row.channel);
+    if (channel === undefined) return '';
+    return `${outside(row.channel, row.name) ? 'outside: ' : ''}${windowTexts(channel, one.show).join('; ')}`;
+  };
+}

@@ -54,7 +54,7 @@ export const fluidSchema = v.strictObject({
   density_kg_m3: number('Density'),
 });
 
-export const verdictSchema = v.pipe(
+const verdictSchema = v.pipe(
   v.picklist(['ready', 'hold']),
   v.description('ready: no blocker; hold: at least one. Read it with the counts'),
 );
@@ -319,6 +319,7 @@ export const resultSchema = v.union([singleSchema, casesSchema]);
 /** CSV columns, in the order of the JSON keys. */
 export const reachColumns = keysOf(reachSchema.entries);
 export const segmentColumns = keysOf(segmentSchema.entries);
+export const outputColumns = keysOf(spreadSchema.entries.outputs.item.entries);
 
 function keysOf<Entries extends object>(entries: Entries): readonly (keyof Entries & string)[] {
   return Object.keys(entries) as (keyof Entries & string)[]; // the entries' own keys

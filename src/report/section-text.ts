@@ -2,7 +2,7 @@ import { DEFAULT_MAX_REYNOLDS } from '../chip/defaults.ts';
 import { formatNumber, formatShare, showOf } from '../runsheet/shown.ts';
 import type { SectionInput, SectionState } from '../section/section.ts';
 import { figures, words } from './columns.ts';
-import { wrapText } from './plain-text.ts';
+import { textWidth, wrapText } from './plain-text.ts';
 import { textTable } from './text-table.ts';
 
 export interface SectionFluid {
@@ -18,7 +18,7 @@ export function sectionText(
   fluid: SectionFluid,
   columns: number,
 ): string {
-  const width = Math.max(40, Math.min(100, columns));
+  const width = textWidth(columns);
   const show = showOf(null);
   const size = (metres: number): string => show.text('cross_length', metres);
   const isGiven = (kind: SectionInput['given']['kind']): string => (input.given.kind === kind ? 'given' : '');

@@ -1,3 +1,4 @@
+import { listText } from '../findings/words.ts';
 import { formatNumber, formatShare, type Show, type Shown, type Unit } from '../runsheet/shown.ts';
 import type { Tolerance } from '../runsheet/types.ts';
 import { isKept, type OutputQuantity } from '../spread/outputs.ts';
@@ -94,7 +95,7 @@ export function shareText(share: number | null): string {
 }
 
 /** The largest causes, those of 1 % and more. */
-export function causesText(shares: Float64Array | null, causes: readonly Cause[], most: number): string {
+function causesText(shares: Float64Array | null, causes: readonly Cause[], most: number): string {
   if (shares === null) return '';
   return rankedCauses(shares, causes)
     .filter(({ share }) => share >= 0.01)
@@ -158,7 +159,7 @@ function sizeText(key: string, { kind, value }: Tolerance, show: Show): string {
 /** "all windows and limits hold in 97.2 % of the draws (95 % interval 96.8 % to 97.5 %)" */
 export function yieldText({ yield: chance, unknownWindows, draws }: Spread): string {
   if (unknownWindows.length > 0)
-    return `nobody can say in how many draws all windows hold: the ${listOf(unknownWindows)} can not be known`;
+    return `nobody can say in how many draws all windows hold: the ${listText(unknownWindows, LISTED)} can not be known`;
   if (chance === null) return draws === 0 ? 'no draw was made, so nothing is said of the yield' : '';
   return `all windows and limits hold in ${shareText(chance.share)} of the draws (95 % interval ${shareText(chance.low)} to ${shareText(chance.high)})`;
 }
@@ -185,18 +186,20 @@ export function remarks(spread: Spread): readonly string[] {
   if (turbulent > 0) texts.push(`in ${turbulent} of the draws some reach was not laminar`);
   const bent = outputs.filter(({ isLinear }) => isLinear === false);
   if (bent.length > 0) {
-    texts.push(`the response is not linear there, go by the sample: ${listOf(bent.map(outputText))}`);
+    texts.push(
+      `the response is not linear there, go by the sample: ${listText(bent.map(outputText), LISTED)}`,
+    );
   }
   const missed = outputs.filter(
     (output) => output.isTarget && output.hasWindow && !isKept(output, output.nominal),
   );
   if (missed.length > 0) {
     texts.push(
-      `at the settings of the run sheet the target is missed by the ${listOf(missed.map(outputText))}; the command pump finds settings that meet it`,
+      `at the settings of the run sheet the target is missed by the ${listText(missed.map(outputText), LISTED)}; the command pump finds settings that meet it`,
     );
   }
   for (const text of idle) texts.push(`moves nothing: ${text}`);
-  if (unknownLimits.length > 0) texts.push(`not judged: ${listOf(unknownLimits)}`);
+  if (unknownLimits.length > 0) texts.push(`not judged: ${listText(unknownLimits, LISTED)}`);
   if (leftOut > 0)
     texts.push(
       `${leftOut} more numbers are not listed for want of room; their windows were judged all the same`,
@@ -219,11 +222,7 @@ export function cornerText({ corner, outputs, causes }: Spread, show: Show): str
 
 const CORNER_END = ['lower', 'each at its worse end', 'upper'] as const;
 
-export function listOf(names: readonly string[], most = 4): string {
-  if (names.length <= 1) return names[0] ?? '';
-  if (names.length > most) return `${names.slice(0, most).join(', ')} and ${names.length - most} more`;
-  return `${names.slice(0, -1).join(', ')} and ${names[names.length - 1]}`;
-}
+const LISTED = 4;
 
 /** Whether anything moves a number. */
 export function moves({ sd, linearSd }: SpreadOutput): boolean {

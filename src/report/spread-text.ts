@@ -1,5 +1,6 @@
 import type { Show } from '../runsheet/shown.ts';
 import type { Spread, SpreadOutput } from '../spread/types.ts';
+import { textOfCases } from './case-text.ts';
 import { type Column, words } from './columns.ts';
 import { cleanText, wrapText } from './plain-text.ts';
 import { ofCase, type Report, type ReportedCase } from './report.ts';
@@ -10,11 +11,7 @@ const MOST_LINES = 32;
 
 /** What the command spread adds to the summary of a check: how sure each number is and what makes it so. Ends with a line end. */
 export function spreadText(report: Report, columns: number): string {
-  const width = Math.max(40, Math.min(100, columns));
-  return report.cases
-    .filter(({ spread }) => spread !== undefined)
-    .map((one) => `${caseLines(one, width).join('\n')}\n\n`)
-    .join('');
+  return textOfCases(report, 'spread', columns, caseLines);
 }
 
 function caseLines(one: ReportedCase, width: number): readonly string[] {

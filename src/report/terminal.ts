@@ -1,9 +1,10 @@
 import picocolors from 'picocolors';
+import { countText } from '../findings/words.ts';
 import { formatMm } from '../runsheet/shown.ts';
 import { figures, words } from './columns.ts';
-import { cleanText, clipText, displayWidth, padText, wrapText } from './plain-text.ts';
+import { cleanText, clipText, displayWidth, padText, textWidth, wrapText } from './plain-text.ts';
 import { valueColumns } from './quantities.ts';
-import { hasWindow, outsideWindows, reachesThatMatter, windowTexts } from './reach-values.ts';
+import { reachesThatMatter, windowCell } from './reach-values.ts';
 import { ofCase, type Report, type ReportedCase } from './report.ts';
 import type { FindingRow } from './result-rows.ts';
 import { portQuantity, reachQuantity } from './result-schema.ts';
@@ -24,7 +25,7 @@ export interface TerminalOptions {
  */
 export function terminalSummary(report: Report, options: TerminalOptions): string {
   const paint = picocolors.createColors(options.colour);
-  const width = Math.max(40, Math.min(100, options.columns));
+  const width = textWidth(options.columns);
   const lines = report.cases.flatMap((one) => {
     const verdict = verdictLines(one, ofCase(cleanText(report.result.layout.file), one), width, paint);
     return options.quiet ? verdict : [...verdict, ...caseLines(one, width, paint)];
@@ -83,11 +84,9 @@ function portLines({ part: { ports }, show }: ReportedCase, width: number, paint
 }
 
 function channelLines(one: ReportedCase, width: number, paint: Paint): string[] {
-  const { network, show } = one;
+  const { show } = one;
   const { rows, windows, of } = reachesThatMatter(one, CHANNEL_LINES);
   if (rows.length === 0) return [];
-  const channels = new Map(network.chip.channels.filter(hasWindow).map((channel) => [channel.name, channel]));
-  const outside = outsideWindows(one);
   const value = valueColumns(reachQuantity, show);
   const table = textTable(
     rows,
@@ -97,17 +96,17 @@ function channelLines(one: ReportedCase, width: number, paint: Paint): string[] 
       value('wall_shear_floor_mean_pa', 'floor shear'),
       value('wall_shear_floor_peak_pa', 'peak'),
       value('residence_time_s', 'residence'),
-      words('window', (row) => {
-        const channel = channels.get(row.channel);
-        if (channel === undefined) return '';
-        return `${outside(row.channel, row.name) ? 'outside: ' : ''}${windowTexts(channel, show).join('; ')}`;
-      }),
+      words('window', windowCell(one)),
     ],
     width,
   );
   return [
     ...headed(table, paint),
-    ...moreLine(of - rows.length, windows ? 'reach with a window' : 'reach', 'es'),
+    ...moreLine(
+      of - rows.length,
+      windows ? 'reach with a window' : 'reach',
+      windows ? 'reaches with a window' : 'reaches',
+    ),
     '',
   ];
 }
@@ -116,11 +115,10 @@ function headed([head, ...lines]: readonly string[], paint: Paint): string[] {
   return [paint.bold(head), ...lines];
 }
 
-function moreLine(left: number, noun: string, ending = 's'): string[] {
-  if (left <= 0) return [];
-  const [first, ...rest] = noun.split(' ');
-  const many = [left === 1 ? first : `${first}${ending}`, ...rest].join(' ');
-  return [`… and ${left} more ${many}: see the reports`];
+function moreLine(left: number, one: string, many?: string): string[] {
+  return left <= 0
+    ? []
+    : [`… and ${countText(left, `more ${one}`, many && `more ${many}`)}: see the reports`];
 }
 
 function findingLines(findings: readonly FindingRow[], width: number, paint: Paint): string[] {

@@ -39,13 +39,12 @@ export function writeCases(contexts: readonly PageContext[]): void {
     [...drawing, `layout ${report.result.layout.file}`].filter(Boolean).join(', '),
     BODY,
   );
-  const total = (pick: (counts: CountsRow) => number): number =>
-    cases.reduce((sum, { part }) => sum + pick(part.counts), 0);
+  const total = (key: keyof CountsRow): number => cases.reduce((sum, { part }) => sum + part.counts[key], 0);
   const counts = verdictCounts({
-    blockers: total(({ blockers }) => blockers),
-    cautions: total(({ cautions }) => cautions),
-    accepted: total(({ accepted }) => accepted),
-    rules_not_run: total(({ rules_not_run }) => rules_not_run),
+    blockers: total('blockers'),
+    cautions: total('cautions'),
+    accepted: total('accepted'),
+    rules_not_run: total('rules_not_run'),
   });
   writeBanner(paper, section, report.result.verdict, `all cases together: ${counts}`);
   writeFoundBox(paper, section, cases);
@@ -137,18 +136,17 @@ const PORTS = 'Ports: condition; pressure at the pump; flow into the chip';
 const REACHES = 'Reaches with a window: flow; mean to peak floor shear; mean residence time';
 
 function reachLines(cases: readonly ReportedCase[], names: readonly string[]): readonly Line[] {
-  const values = cases.map((one) => reachTexts(one, new Set(names)));
+  const textOf = cases.map((one) => reachTexts(one, new Set(names)));
   return names.map((name, i) => {
-    const texts = values.map((value) => value.get(name) ?? null);
+    const texts = textOf.map((texts) => texts.get(name));
     const windows = new Set(texts.map((text) => text?.windows ?? ''));
     // a window that all cases share is said once
     const [shared] = windows.size === 1 ? windows : [''];
     return {
       label: shared === '' ? name : `${name}: ${shared}`,
       texts: texts.map((text) => {
-        if (text === null) return '–';
-        const own = shared === '' ? ` ${text.windows}` : '';
-        return `${text.verdict}${own}: ${text.values}`;
+        if (text === undefined) return '–';
+        return `${text.verdict}${shared === '' ? ` ${text.windows}` : ''}: ${text.values}`;
       }),
       group: i === 0 ? REACHES : null,
     };
@@ -191,29 +189,25 @@ function windowedReaches(cases: readonly ReportedCase[]): {
   return { names: [...names].slice(0, MOST_REACHES), more: Math.max(0, names.size - MOST_REACHES) };
 }
 
-interface ReachText {
-  readonly values: string;
-  readonly windows: string;
-  readonly verdict: 'inside' | 'OUTSIDE' | 'no window';
-}
-
 /** By name: what flows, and what the windows say to it. */
-function reachTexts(one: ReportedCase, wanted: ReadonlySet<string>): ReadonlyMap<string, ReachText> {
+function reachTexts(
+  one: ReportedCase,
+  wanted: ReadonlySet<string>,
+): ReadonlyMap<string, Readonly<Record<'values' | 'windows' | 'verdict', string>>> {
   const { network, part, show } = one;
   const outside = outsideWindows(one);
-  const texts = new Map<string, ReachText>();
-  for (let reach = 0; reach < network.reachCount; reach++) {
-    const name = network.reachName(reach);
-    if (!wanted.has(name)) continue;
-    const channel = network.chip.channels[network.reachChannel[reach]];
-    const windows = windowTexts(channel, show).join('; ');
-    texts.set(name, {
-      values: valuesText(part.reaches.at(reach), show),
-      windows,
-      verdict: windows === '' ? 'no window' : outside(channel.name, name) ? 'OUTSIDE' : 'inside',
-    });
-  }
-  return texts;
+  const reaches = Array.from({ length: network.reachCount }, (_, reach) => reach);
+  return new Map(
+    reaches
+      .filter((reach) => wanted.has(network.reachName(reach)))
+      .map((reach) => {
+        const name = network.reachName(reach);
+        const channel = network.chip.channels[network.reachChannel[reach]];
+        const windows = windowTexts(channel, show).join('; ');
+        const verdict = windows === '' ? 'no window' : outside(channel.name, name) ? 'OUTSIDE' : 'inside';
+        return [name, { values: valuesText(part.reaches.at(reach), show), windows, verdict }];
+      }),
+  );
 }
 
 function valuesText(row: ReachRow, show: Show): string {

@@ -1,11 +1,19 @@
 import type { Finding } from '../../findings/types.ts';
+import { countText } from '../../findings/words.ts';
 import { formatMm, measureText } from '../../runsheet/shown.ts';
 import { figures, words } from '../columns.ts';
 import { drawPlace, type PlaceDrawing } from '../place.ts';
-import { plural, verdictLine } from '../verdict-line.ts';
+import { verdictLine } from '../verdict-line.ts';
 import { BODY, BODY_BOLD, type PageContext, SMALL } from './context.ts';
-import { inMillimetres, paintLabel, paintScaleBar, paintStrokes, putCentred } from './paint-map.ts';
-import { type Element, lineHeight, POINTS_PER_MM } from './paper.ts';
+import {
+  inMillimetres,
+  paintEdge,
+  paintLabel,
+  paintScaleBar,
+  paintScaleText,
+  paintStrokes,
+} from './paint-map.ts';
+import { type Element, lineHeight, type Paper, POINTS_PER_MM } from './paper.ts';
 import { drawTable } from './table.ts';
 
 /** Findings with a picture each, then as lines of a table, then only counted. */
@@ -31,7 +39,7 @@ export function writeFindings(context: PageContext): void {
   writeFurther(context, section, findings.slice(PICTURES, PICTURES + LINES));
   const left = findings.length - PICTURES - LINES;
   if (left > 0)
-    paper.paragraph(section, `… and ${plural(left, 'more finding')}, all in the JSON result.`, BODY);
+    paper.paragraph(section, `… and ${countText(left, 'more finding')}, all in the JSON result.`, BODY);
   writeNotRun(context, section, notRun);
 }
 
@@ -78,14 +86,10 @@ function writeFinding(context: PageContext, section: Element, finding: Finding, 
   for (const text of paragraphs) paper.paragraph(section, text, BODY, { x: textX, width: textWidth });
   const end = paper.y;
   if (picture !== null && end > top) {
-    paintPlace(
-      context,
-      section,
-      picture,
-      paper.right - PICTURE_MM.width * POINTS_PER_MM,
-      top,
-      `Close-up of the place of finding ${number}`,
-    );
+    const left = paper.right - PICTURE_MM.width * POINTS_PER_MM;
+    paper.tagged(section, 'Figure', () => paintPlace(paper, picture, left, top), {
+      alt: `Close-up of the place of finding ${number}`,
+    });
   }
   paper.y = Math.max(end, end > top ? top + height : end) + 6;
 }
@@ -112,47 +116,22 @@ function findingTexts({ one }: PageContext, finding: Finding, measured: string |
   ].filter((text) => text !== '');
 }
 
-function paintPlace(
-  { paper }: PageContext,
-  section: Element,
-  picture: PlaceDrawing,
-  x: number,
-  y: number,
-  alt: string,
-): void {
+function paintPlace(paper: Paper, picture: PlaceDrawing, x: number, y: number): void {
   const { doc } = paper;
-  paper.tagged(
-    section,
-    'Figure',
-    () => {
-      inMillimetres(paper, x, y, () => {
-        doc.save();
-        doc.rect(0, 0, picture.widthMm, picture.viewHeightMm).clip();
-        for (const ring of picture.edge) {
-          doc.moveTo(ring[0], ring[1]);
-          for (let i = 2; i < ring.length; i += 2) doc.lineTo(ring[i], ring[i + 1]);
-          doc.lineWidth(0.3).strokeColor('#606060').stroke();
-        }
-        paintStrokes(paper, picture.strokes);
-        for (const hole of picture.holes)
-          doc.circle(hole.x, hole.y, hole.radiusMm).lineWidth(0.3).fillAndStroke('#ffffff', '#202020');
-        paintMark(doc, picture);
-        doc.restore();
-        paintScaleBar(paper, picture.scaleBar);
-        doc.rect(0, 0, picture.widthMm, picture.viewHeightMm).lineWidth(0.2).strokeColor('#888888').stroke();
-      });
-      for (const label of picture.labels) paintLabel(paper, label, x, y);
-      const { scaleBar } = picture;
-      putCentred(
-        paper,
-        scaleBar.text,
-        x + (scaleBar.x + scaleBar.lengthMm / 2) * POINTS_PER_MM,
-        y + (scaleBar.y + 0.7) * POINTS_PER_MM,
-        scaleBar.sizeMm,
-      );
-    },
-    { alt },
-  );
+  inMillimetres(paper, x, y, () => {
+    doc.save();
+    doc.rect(0, 0, picture.widthMm, picture.viewHeightMm).clip();
+    paintEdge(paper, picture, 0.3);
+    paintStrokes(paper, picture.strokes);
+    for (const hole of picture.holes)
+      doc.circle(hole.x, hole.y, hole.radiusMm).lineWidth(0.3).fillAndStroke('#ffffff', '#202020');
+    paintMark(doc, picture);
+    doc.restore();
+    paintScaleBar(paper, picture.scaleBar);
+    doc.rect(0, 0, picture.widthMm, picture.viewHeightMm).lineWidth(0.2).strokeColor('#888888').stroke();
+  });
+  for (const label of picture.labels) paintLabel(paper, label, x, y);
+  paintScaleText(paper, picture.scaleBar, x, y, 0.7);
 }
 
 const MARK_COLOUR = '#b00020';

@@ -1,12 +1,12 @@
-import { listText } from '../../findings/words.ts';
+import { countText, listText } from '../../findings/words.ts';
 import { words } from '../columns.ts';
 import { cleanText } from '../plain-text.ts';
 import { quantityColumns } from '../quantities.ts';
-import { hasWindow, outsideWindows, reachesThatMatter, windowTexts } from '../reach-values.ts';
+import { outsideWindows, reachesThatMatter, windowCell } from '../reach-values.ts';
 import { casesLeftOut, ofCase } from '../report.ts';
-import type { PortRow, ReachRow } from '../result-rows.ts';
+import type { PortRow } from '../result-rows.ts';
 import { reachQuantity } from '../result-schema.ts';
-import { plural, verdictCounts } from '../verdict-line.ts';
+import { verdictCounts } from '../verdict-line.ts';
 import { BODY, BODY_BOLD, type PageContext, SMALL } from './context.ts';
 import { drawingText } from './drawing-text.ts';
 import { factsHeight, writeFacts } from './facts.ts';
@@ -64,14 +64,14 @@ function writeVerdict({ paper, report, one }: PageContext, section: Element): vo
     `layout ${report.result.layout.file}`,
   ].filter((text) => text !== '');
   paper.paragraph(section, drawing.join(', '), BODY);
-  const counts = `${verdictCounts(part.counts)}, ${plural(part.counts.notes, 'note')}`;
+  const counts = `${verdictCounts(part.counts)}, ${countText(part.counts.notes, 'note')}`;
   writeBanner(paper, section, part.verdict, counts);
   writeFoundBox(paper, section, [one]);
   const leftOut = casesLeftOut(report);
   if (leftOut.length > 0) {
     paper.paragraph(
       section,
-      `Of this case alone. Not looked at: ${plural(leftOut.length, 'other case')} of the run sheet (${cleanText(listText(leftOut, 8))}).`,
+      `Of this case alone. Not looked at: ${countText(leftOut.length, 'other case')} of the run sheet (${cleanText(listText(leftOut, 8))}).`,
       BODY_BOLD,
     );
   }
@@ -100,7 +100,7 @@ function writePorts(
   drawTable(paper, section, ports, portColumns(one.part.ports, one.show), { size: 6.8 });
   if (more > 0) {
     paper.y -= 4;
-    paper.paragraph(section, `… and ${plural(more, 'more port')} on the next page.`, SMALL);
+    paper.paragraph(section, `… and ${countText(more, 'more port')} on the next page.`, SMALL);
   }
 }
 
@@ -110,17 +110,10 @@ const REACHES_SHOWN = 14;
 function writeReachesThatMatter({ paper, one }: PageContext, section: Element, room: number): void {
   const count = Math.min(REACHES_SHOWN, Math.floor((room - 56) / 9.8));
   if (count < 2) return;
-  const { network, show } = one;
   const { rows, windows, of } = reachesThatMatter(one, count);
   if (rows.length === 0) return;
   const outside = outsideWindows(one);
-  const channels = new Map(network.chip.channels.filter(hasWindow).map((channel) => [channel.name, channel]));
-  const columns = quantityColumns(reachQuantity, rows, show);
-  const windowCell = ({ channel: name, ...row }: ReachRow): string => {
-    const channel = channels.get(name);
-    const texts = channel === undefined ? [] : windowTexts(channel, show);
-    return `${outside(name, row.name) ? 'outside: ' : ''}${texts.join('; ')}`;
-  };
+  const columns = quantityColumns(reachQuantity, rows, one.show);
   paper.heading(section, 3, windows ? 'Reaches with a window' : 'The most sheared reaches');
   drawTable(
     paper,
@@ -135,7 +128,7 @@ function writeReachesThatMatter({ paper, one }: PageContext, section: Element, r
         { key: 'wall_shear_floor_peak_pa', head: 'peak' },
       ),
       ...columns('residence_time_s', 'fastest_time_s'),
-      ...(windows ? [words('window', windowCell)] : []),
+      ...(windows ? [words('window', windowCell(one))] : []),
     ],
     { size: 6.8, isBold: (row) => outside(row.channel, row.name) },
   );

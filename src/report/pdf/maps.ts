@@ -1,7 +1,7 @@
-import { drawMap, mapNotes } from '../map.ts';
+import { drawMap } from '../map.ts';
 import { MAP_QUANTITIES } from '../map-quantities.ts';
 import { type PageContext, SMALL } from './context.ts';
-import { paintMap } from './paint-map.ts';
+import { writeMap } from './paint-map.ts';
 import { POINTS_PER_MM } from './paper.ts';
 
 const TEXT_POINTS = 44;
@@ -22,20 +22,15 @@ export function writeMaps({ paper, one, geometry, measure, readable }: PageConte
       findingNumbers: false,
       reachLabels: true,
     });
-    const height = drawing.heightMm * POINTS_PER_MM;
-    paper.need(height + TEXT_POINTS - 2);
-    const title = MAP_QUANTITIES[quantity].title;
+    paper.need(drawing.heightMm * POINTS_PER_MM + TEXT_POINTS - 2);
+    const { title } = MAP_QUANTITIES[quantity];
     paper.heading(section, 2, `${title[0].toUpperCase()}${title.slice(1)}`);
-    paintMap(
+    writeMap(
       paper,
       section,
       drawing,
-      paper.left,
-      paper.y,
       `The chip as drawn, coloured by ${title}; the numbers are in the table of reaches.`,
     );
-    paper.y += height;
-    paper.paragraph(section, mapNotes(drawing), SMALL);
     paper.y += 3;
   }
 }

@@ -1,3 +1,4 @@
+import { countText } from '../../findings/words.ts';
 import type { Show } from '../../runsheet/shown.ts';
 import { type Column, words } from '../columns.ts';
 import { quantityColumns } from '../quantities.ts';
@@ -5,13 +6,12 @@ import { hasWindow, outsideWindows, windowTexts } from '../reach-values.ts';
 import type { ReportedCase } from '../report.ts';
 import type { ReachRow } from '../result-rows.ts';
 import { reachQuantity } from '../result-schema.ts';
-import { plural } from '../verdict-line.ts';
 import { type PageContext, SMALL } from './context.ts';
 import { drawTable } from './table.ts';
 
 /** All reaches are printed up to here; of a larger network the first ones, and the rest is in the CSV and JSON. */
-export const REACH_BOUND = 2000;
-export const REACHES_OF_MANY = 500;
+const REACH_BOUND = 2000;
+const REACHES_OF_MANY = 500;
 
 /** The table of reaches, grouped by channel, each channel's windows at the head of its reaches. */
 export function writeReaches({ paper, one }: PageContext): void {
@@ -41,7 +41,7 @@ export function writeReaches({ paper, one }: PageContext): void {
   if (more > 0) {
     paper.paragraph(
       section,
-      `… and ${more} more of ${plural(network.reachCount, 'reach').replace('reachs', 'reaches')}: all are in the CSV (--formats csv) and JSON (--formats json) files.`,
+      `… and ${more} more of ${countText(network.reachCount, 'reach', 'reaches')}: all are in the CSV (--formats csv) and JSON (--formats json) files.`,
       SMALL,
     );
   }

@@ -8,7 +8,7 @@ import { type PageContext, SMALL } from './context.ts';
 import { drawTable } from './table.ts';
 
 /** Above this the segments are in the CSV and JSON files only. */
-export const SEGMENT_BOUND = 2000;
+const SEGMENT_BOUND = 2000;
 
 /** The table of segments, the chords of one curve in one row; over the bound a line that says where they are. */
 export function writeSegments({ paper, one }: PageContext): void {
