@@ -7,15 +7,14 @@ import type { ReportedCase } from '../report.ts';
 import type { CountsRow, ReachRow } from '../result-rows.ts';
 import { portQuantity, reachQuantity } from '../result-schema.ts';
 import { verdictCounts } from '../verdict-line.ts';
-import { BODY, type PageContext, SMALL } from './context.ts';
+import { type PageContext, SMALL } from './context.ts';
 import { drawingText } from './drawing-text.ts';
 import { factsHeight, writeFacts } from './facts.ts';
 import { writeFoundBox } from './found-box.ts';
 import { inputFacts } from './input-facts.ts';
-import type { Element, Paper } from './paper.ts';
 import { writePressureMap } from './pressure-map.ts';
+import { chapter, type Section } from './section.ts';
 import { SIGN_HEIGHT, writeBanner, writeSignatures } from './sign-off.ts';
-import { drawTable } from './table.ts';
 
 /** Cases beside each other in one table; more run on in tables below. */
 const CASES_ABREAST = 4;
@@ -31,14 +30,10 @@ export function writeCases(contexts: readonly PageContext[]): void {
   if (contexts.length < 2) return;
   const [{ paper, report, one }] = contexts;
   const { cases } = report;
-  const section = paper.chapter('Cases compared', 'portrait');
+  const section = chapter(paper, 'Cases compared', 'portrait');
   const { sheet } = one.network.chip;
   const drawing = [sheet?.title ?? '', sheet === null ? '' : drawingText(sheet.drawing)];
-  paper.paragraph(
-    section,
-    [...drawing, `layout ${report.result.layout.file}`].filter(Boolean).join(', '),
-    BODY,
-  );
+  section.paragraph([...drawing, `layout ${report.result.layout.file}`].filter(Boolean).join(', '));
   const total = (key: keyof CountsRow): number => cases.reduce((sum, { part }) => sum + part.counts[key], 0);
   const counts = verdictCounts({
     blockers: total('blockers'),
@@ -46,34 +41,33 @@ export function writeCases(contexts: readonly PageContext[]): void {
     accepted: total('accepted'),
     rules_not_run: total('rules_not_run'),
   });
-  writeBanner(paper, section, report.result.verdict, `all cases together: ${counts}`);
-  writeFoundBox(paper, section, cases);
-  paper.paragraph(
-    section,
+  writeBanner(section, report.result.verdict, `all cases together: ${counts}`);
+  writeFoundBox(section, cases);
+  section.paragraph(
     `${cases.length} cases of one chip, each solved and judged on its own; the chip is ${report.result.verdict === 'ready' ? 'ready: no case has a blocker' : 'on hold: at least one case has a blocker'}.`,
     SMALL,
   );
   for (let from = 0; from < cases.length; from += CASES_ABREAST)
-    writeTable(paper, section, cases.slice(from, from + CASES_ABREAST));
+    writeTable(section, cases.slice(from, from + CASES_ABREAST));
   const facts = inputFacts(contexts[0]).filter(([key]) => !OF_EACH_CASE.has(key));
   const height = factsHeight(paper, facts) + SIGN_HEIGHT + 24;
   if (paper.y + height > paper.bottom) paper.newPage();
   writePicture(contexts, section, height);
   paper.y = Math.max(paper.y, paper.bottom - height);
-  paper.heading(section, 3, 'What went in');
-  writeFacts(paper, section, facts);
-  writeSignatures(paper, section);
+  section.heading(3, 'What went in');
+  writeFacts(section, facts);
+  writeSignatures(section);
 }
 
 /** Less room than this above the inputs is left empty, points. */
 const PICTURE_ROOM = 240;
 
 /** The chip itself, in the first case that is on hold, else in the first; every case has such a picture on its own page. */
-function writePicture(contexts: readonly PageContext[], section: Element, below: number): void {
+function writePicture(contexts: readonly PageContext[], section: Section, below: number): void {
   const context = contexts.find(({ one }) => one.part.verdict === 'hold') ?? contexts[0];
   const { paper, one } = context;
   if (paper.bottom - below - paper.y < PICTURE_ROOM) return;
-  paper.heading(section, 3, `The chip in case ${cleanText(one.name ?? '')}`);
+  section.heading(3, `The chip in case ${cleanText(one.name ?? '')}`);
   writePressureMap(context, section, below);
 }
 
@@ -88,7 +82,7 @@ interface Line {
   readonly group: string | null;
 }
 
-function writeTable(paper: Paper, section: Element, cases: readonly ReportedCase[]): void {
+function writeTable(section: Section, cases: readonly ReportedCase[]): void {
   const { names, more } = windowedReaches(cases);
   const line = (label: string, text: (one: ReportedCase) => string, group: string | null = null): Line => ({
     label,
@@ -113,9 +107,7 @@ function writeTable(paper: Paper, section: Element, cases: readonly ReportedCase
       .map(({ name }, i) => line(name, (one) => portText(one, name), i === 0 ? PORTS : null)),
     ...reachLines(cases, names),
   ];
-  drawTable(
-    paper,
-    section,
+  section.table(
     lines,
     [
       words('', ({ label }) => label, 'wrap'),
@@ -129,7 +121,7 @@ function writeTable(paper: Paper, section: Element, cases: readonly ReportedCase
     { size: 7, group: ({ group }) => group, isBold: (one) => one === verdict },
   );
   if (more > 0)
-    paper.paragraph(section, `… and ${more} more reaches with a window: see the tables of reaches.`, SMALL);
+    section.paragraph(`… and ${more} more reaches with a window: see the tables of reaches.`, SMALL);
 }
 
 const PORTS = 'Ports: condition; pressure at the pump; flow into the chip';

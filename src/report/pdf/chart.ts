@@ -1,4 +1,5 @@
-import type { Element, Paper, TextStyle } from './paper.ts';
+import type { Paper, TextStyle } from './paper.ts';
+import type { Section } from './section.ts';
 
 /** What charts have in common: how they stand on the page, their field, window and colours. Lengths in points. */
 export const INK = '#222222';
@@ -26,19 +27,19 @@ export function fieldOf(
 
 /** Figures side by side, `perRow` of them; turns pages between rows. */
 export function writeCharts<Chart>(
-  paper: Paper,
-  section: Element,
+  section: Section,
   charts: readonly Chart[],
   { perRow, gap, height }: { readonly perRow: number; readonly gap: number; readonly height: number },
   paint: (chart: Chart, x: number, y: number, width: number) => void,
   alt: (chart: Chart) => string,
 ): void {
+  const { paper } = section;
   const width = (paper.width - (perRow - 1) * gap) / perRow;
   charts.forEach((chart, i) => {
     const column = i % perRow;
     if (column === 0) paper.need(height);
     const x = paper.left + column * (width + gap);
-    paper.tagged(section, 'Figure', () => paint(chart, x, paper.y, width), { alt: alt(chart) });
+    section.figure(alt(chart), () => paint(chart, x, paper.y, width));
     if (column === perRow - 1 || i === charts.length - 1) paper.y += height;
   });
 }

@@ -1,4 +1,5 @@
-import { type Element, lineHeight, type Paper } from './paper.ts';
+import { lineHeight, type Paper } from './paper.ts';
+import type { Section } from './section.ts';
 
 type Facts = readonly (readonly [string, string])[];
 
@@ -9,8 +10,9 @@ const STEP = lineHeight(STYLE);
 const GAP = 0.8;
 
 /** A two-column table of names and texts over the page's width; long texts run over lines. Moves the paper down. */
-export function writeFacts(paper: Paper, parent: Element, facts: Facts): void {
-  const table = paper.child(parent, 'Table');
+export function writeFacts(section: Section, facts: Facts): void {
+  const { paper } = section;
+  const table = paper.child(section.element, 'Table');
   for (const [key, text] of facts) {
     const lines = wrapped(paper, text);
     paper.need(STEP * Math.min(lines.length, 4));

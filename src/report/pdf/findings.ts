@@ -13,8 +13,8 @@ import {
   paintScaleText,
   paintStrokes,
 } from './paint-map.ts';
-import { type Element, lineHeight, type Paper, POINTS_PER_MM } from './paper.ts';
-import { drawTable } from './table.ts';
+import { lineHeight, type Paper, POINTS_PER_MM } from './paper.ts';
+import { chapter, type Section } from './section.ts';
 
 /** Findings with a picture each, then as lines of a table, then only counted. */
 const PICTURES = 120;
@@ -25,28 +25,26 @@ const PICTURE_MM = { width: 58, height: 40 } as const;
 export function writeFindings(context: PageContext): void {
   const { paper, one } = context;
   const { findings, notRun } = one.findings;
-  const section = paper.chapter('Findings', 'portrait');
-  paper.paragraph(
-    section,
+  const section = chapter(paper, 'Findings', 'portrait');
+  section.paragraph(
     `${verdictLine(one.part.verdict, one.part.counts)}. Numbers are those on the map of ${one.name === null ? 'page 1' : 'this case'}; places are in drawing coordinates, mm, y down.`,
     SMALL,
   );
   paper.y += 4;
-  if (findings.length === 0) paper.paragraph(section, 'No finding.', BODY);
+  if (findings.length === 0) section.paragraph('No finding.');
   findings.slice(0, PICTURES).forEach((finding, i) => {
     writeFinding(context, section, finding, i + 1);
   });
   writeFurther(context, section, findings.slice(PICTURES, PICTURES + LINES));
   const left = findings.length - PICTURES - LINES;
-  if (left > 0)
-    paper.paragraph(section, `… and ${countText(left, 'more finding')}, all in the JSON result.`, BODY);
+  if (left > 0) section.paragraph(`… and ${countText(left, 'more finding')}, all in the JSON result.`);
   writeNotRun(context, section, notRun);
 }
 
 const COLOURS = { blocker: '#8f1414', caution: '#7a5200', note: '#1f4e79' } as const;
 const ACCEPTED_COLOUR = '#555555';
 
-function writeFinding(context: PageContext, section: Element, finding: Finding, number: number): void {
+function writeFinding(context: PageContext, section: Section, finding: Finding, number: number): void {
   const { paper, one, geometry, measure, readable } = context;
   const measured =
     finding.measured === null ? null : measureText(one.show, finding.measured, finding.unit, finding.rule);
@@ -74,7 +72,7 @@ function writeFinding(context: PageContext, section: Element, finding: Finding, 
   paper.decoration(() => {
     paper.doc.roundedRect(paper.left, top, 17, 12, 2).fill(colour);
   });
-  paper.tagged(section, 'H2', () => {
+  paper.tagged(section.element, 'H2', () => {
     const badge = { size: 7.5, weight: 'bold', colour: '#ffffff' } as const;
     const text = String(number);
     paper.put(text, paper.left + 8.5 - paper.widthOf(text, badge) / 2, top + 1.3, badge);
@@ -83,13 +81,11 @@ function writeFinding(context: PageContext, section: Element, finding: Finding, 
     paper.put(paper.clip(title, textWidth, style), textX, top + 1.3, style);
   });
   paper.y = top + lineHeight(BODY_BOLD) + 3;
-  for (const text of paragraphs) paper.paragraph(section, text, BODY, { x: textX, width: textWidth });
+  for (const text of paragraphs) section.paragraph(text, BODY, { x: textX, width: textWidth });
   const end = paper.y;
   if (picture !== null && end > top) {
     const left = paper.right - PICTURE_MM.width * POINTS_PER_MM;
-    paper.tagged(section, 'Figure', () => paintPlace(paper, picture, left, top), {
-      alt: `Close-up of the place of finding ${number}`,
-    });
+    section.figure(`Close-up of the place of finding ${number}`, () => paintPlace(paper, picture, left, top));
   }
   paper.y = Math.max(end, end > top ? top + height : end) + 6;
 }
@@ -160,12 +156,10 @@ function paintMark(doc: PDFKit.PDFDocument, { mark, cross: [x, y] }: PlaceDrawin
   doc.lineWidth(0.35).strokeColor(MARK_COLOUR).stroke();
 }
 
-function writeFurther({ paper, one }: PageContext, section: Element, findings: readonly Finding[]): void {
+function writeFurther({ one }: PageContext, section: Section, findings: readonly Finding[]): void {
   if (findings.length === 0) return;
-  paper.heading(section, 2, 'Further findings');
-  drawTable(
-    paper,
-    section,
+  section.heading(2, 'Further findings');
+  section.table(
     findings.map((finding, i) => ({ number: PICTURES + i + 1, finding })),
     [
       figures('no.', ({ number }) => String(number)),
@@ -184,14 +178,11 @@ function writeFurther({ paper, one }: PageContext, section: Element, findings: r
 
 function writeNotRun(
   { paper }: PageContext,
-  section: Element,
+  section: Section,
   notRun: readonly { readonly rule: string; readonly why: string }[],
 ): void {
   if (notRun.length === 0) return;
   paper.y += 4;
-  paper.heading(section, 2, 'Rules not run');
-  drawTable(paper, section, notRun, [
-    words('rule', ({ rule }) => rule),
-    words('why', ({ why }) => why, 'wrap'),
-  ]);
+  section.heading(2, 'Rules not run');
+  section.table(notRun, [words('rule', ({ rule }) => rule), words('why', ({ why }) => why, 'wrap')]);
 }

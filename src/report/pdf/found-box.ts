@@ -5,8 +5,7 @@ import { type Column, words } from '../columns.ts';
 import { fine, portName } from '../pump-rows.ts';
 import type { ReportedCase } from '../report.ts';
 import { BODY_BOLD, SMALL } from './context.ts';
-import type { Element, Paper } from './paper.ts';
-import { drawTable } from './table.ts';
+import type { Section } from './section.ts';
 
 /** Settings told in the box; all are on the page of the settings. */
 const MOST_ROWS = 6;
@@ -18,13 +17,14 @@ interface FoundIn {
 }
 
 /** Says in a box that these numbers are at settings that were found, the run sheet's beside them. Nothing for other commands. */
-export function writeFoundBox(paper: Paper, section: Element, cases: readonly ReportedCase[]): void {
+export function writeFoundBox(section: Section, cases: readonly ReportedCase[]): void {
+  const { paper } = section;
   const rows = cases.flatMap((one) => (one.pump?.targets ?? []).map((target) => ({ one, target })));
   if (rows.length === 0) return;
   const top = paper.y + 2;
   const inner = { x: paper.left + INSET, width: paper.width - 2 * INSET };
   paper.y = top + INSET;
-  paper.paragraph(section, HEAD, BODY_BOLD, inner);
+  section.paragraph(HEAD, BODY_BOLD, inner);
   const columns: readonly Column<FoundIn>[] = [
     words('case', ({ one }) => one.name ?? '', 'share'),
     words('port', ({ one, target }) => portName(one.network, target), 'share'),
@@ -35,13 +35,12 @@ export function writeFoundBox(paper: Paper, section: Element, cases: readonly Re
       ),
     ),
   ];
-  drawTable(paper, section, rows.slice(0, MOST_ROWS), cases.length > 1 ? columns : columns.slice(1), {
+  section.table(rows.slice(0, MOST_ROWS), cases.length > 1 ? columns : columns.slice(1), {
     ...inner,
     size: 7.5,
   });
   const more = rows.length - MOST_ROWS;
-  if (more > 0)
-    paper.paragraph(section, `… and ${more} more, on the page of the pump settings.`, SMALL, inner);
+  if (more > 0) section.paragraph(`… and ${more} more, on the page of the pump settings.`, SMALL, inner);
   paper.decoration(() => {
     paper.doc
       .rect(paper.left, top, paper.width, paper.y - top)

@@ -7,17 +7,16 @@ import { casesLeftOut, ofCase } from '../report.ts';
 import type { PortRow } from '../result-rows.ts';
 import { reachQuantity } from '../result-schema.ts';
 import { verdictCounts } from '../verdict-line.ts';
-import { BODY, BODY_BOLD, type PageContext, SMALL } from './context.ts';
+import { BODY_BOLD, type PageContext, SMALL } from './context.ts';
 import { drawingText } from './drawing-text.ts';
 import { factsHeight, writeFacts } from './facts.ts';
 import { writeFoundBox } from './found-box.ts';
 import { inputFacts } from './input-facts.ts';
-import type { Element } from './paper.ts';
 import { portColumns } from './port-columns.ts';
 import { writePressureMap } from './pressure-map.ts';
 import { reachName } from './reaches.ts';
+import { Section } from './section.ts';
 import { SIGN_HEIGHT, writeBanner, writeSignatures } from './sign-off.ts';
-import { drawTable } from './table.ts';
 
 /**
  * Page 1: verdict with all its counts and what was not checked, the chip coloured by pressure, ports, what went in, and lines to sign.
@@ -27,7 +26,7 @@ export function writeFrontPage(context: PageContext): void {
   const { paper, one } = context;
   paper.newPage('portrait');
   paper.bookmark(one.name === null ? 'Verdict' : `Case ${cleanText(one.name)}: verdict`);
-  const section = paper.section();
+  const section = new Section(paper);
   writeVerdict(context, section);
   const facts = inputFacts(context);
   const below = factsHeight(paper, facts) + SIGN_HEIGHT + 34;
@@ -39,21 +38,21 @@ export function writeFrontPage(context: PageContext): void {
   writePorts(context, section, 'Ports', here, ports.length - here.length);
   if (here.length === ports.length) writeReachesThatMatter(context, section, paper.bottom - below - paper.y);
   paper.y = Math.max(paper.y, paper.bottom - below + 6);
-  paper.heading(section, 3, 'What went in');
-  writeFacts(paper, section, facts);
+  section.heading(3, 'What went in');
+  writeFacts(section, facts);
   // with cases there is one verdict, signed on page 1
-  if (context.report.cases.length === 1) writeSignatures(paper, section);
+  if (context.report.cases.length === 1) writeSignatures(section);
   if (here.length < ports.length) {
     paper.newPage('portrait');
     writePorts(context, section, 'Ports, continued', ports.slice(here.length), 0);
   }
 }
 
-function writeVerdict({ paper, report, one }: PageContext, section: Element): void {
+function writeVerdict({ paper, report, one }: PageContext, section: Section): void {
   const { sheet } = one.network.chip;
   const { part } = one;
   const title = ofCase(sheet?.title ?? report.result.layout.file, one);
-  paper.tagged(section, 'H1', () => {
+  paper.tagged(section.element, 'H1', () => {
     const style = { size: 14, weight: 'bold' } as const;
     paper.put(paper.clip(title, paper.width, style), paper.left, paper.y, style);
   });
@@ -63,14 +62,13 @@ function writeVerdict({ paper, report, one }: PageContext, section: Element): vo
     sheet?.drawing.drawnBy == null ? '' : `drawn by ${sheet.drawing.drawnBy}`,
     `layout ${report.result.layout.file}`,
   ].filter((text) => text !== '');
-  paper.paragraph(section, drawing.join(', '), BODY);
+  section.paragraph(drawing.join(', '));
   const counts = `${verdictCounts(part.counts)}, ${countText(part.counts.notes, 'note')}`;
-  writeBanner(paper, section, part.verdict, counts);
-  writeFoundBox(paper, section, [one]);
+  writeBanner(section, part.verdict, counts);
+  writeFoundBox(section, [one]);
   const leftOut = casesLeftOut(report);
   if (leftOut.length > 0) {
-    paper.paragraph(
-      section,
+    section.paragraph(
       `Of this case alone. Not looked at: ${countText(leftOut.length, 'other case')} of the run sheet (${cleanText(listText(leftOut, 8))}).`,
       BODY_BOLD,
     );
@@ -84,40 +82,38 @@ function writeVerdict({ paper, report, one }: PageContext, section: Element): vo
     lines.length <= 3
       ? lines.join(' ')
       : `${lines.slice(0, 2).join(' ')} … All are listed with the findings.`;
-  paper.paragraph(section, shown, SMALL);
+  section.paragraph(shown, SMALL);
 }
 
 function writePorts(
   context: PageContext,
-  section: Element,
+  section: Section,
   title: string,
   ports: readonly PortRow[],
   more: number,
 ): void {
   const { paper, one } = context;
   if (ports.length === 0) return;
-  paper.heading(section, 3, title);
-  drawTable(paper, section, ports, portColumns(one.part.ports, one.show), { size: 6.8 });
+  section.heading(3, title);
+  section.table(ports, portColumns(one.part.ports, one.show), { size: 6.8 });
   if (more > 0) {
     paper.y -= 4;
-    paper.paragraph(section, `… and ${countText(more, 'more port')} on the next page.`, SMALL);
+    section.paragraph(`… and ${countText(more, 'more port')} on the next page.`, SMALL);
   }
 }
 
 const REACHES_SHOWN = 14;
 
 /** What the chip is for, in the room that is left: reaches with a window, or else the most sheared. */
-function writeReachesThatMatter({ paper, one }: PageContext, section: Element, room: number): void {
+function writeReachesThatMatter({ paper, one }: PageContext, section: Section, room: number): void {
   const count = Math.min(REACHES_SHOWN, Math.floor((room - 56) / 9.8));
   if (count < 2) return;
   const { rows, windows, of } = reachesThatMatter(one, count);
   if (rows.length === 0) return;
   const outside = outsideWindows(one);
   const columns = quantityColumns(reachQuantity, rows, one.show);
-  paper.heading(section, 3, windows ? 'Reaches with a window' : 'The most sheared reaches');
-  drawTable(
-    paper,
-    section,
+  section.heading(3, windows ? 'Reaches with a window' : 'The most sheared reaches');
+  section.table(
     rows,
     [
       reachName(outside),
@@ -134,6 +130,6 @@ function writeReachesThatMatter({ paper, one }: PageContext, section: Element, r
   );
   if (of > rows.length) {
     paper.y -= 4;
-    paper.paragraph(section, `… and ${of - rows.length} more in the table of reaches.`, SMALL);
+    section.paragraph(`… and ${of - rows.length} more in the table of reaches.`, SMALL);
   }
 }

@@ -4,17 +4,16 @@ import { figures, words } from '../columns.ts';
 import { reachesThatMatter } from '../reach-values.ts';
 import type { ReportedCase } from '../report.ts';
 import type { ReachRow } from '../result-rows.ts';
-import { BODY, type PageContext } from './context.ts';
-import type { Element } from './paper.ts';
-import { drawTable } from './table.ts';
+import type { PageContext } from './context.ts';
+import { chapter, type Section } from './section.ts';
 
 /** What can be checked with pencil and paper: plate formulas beside the exact values, flows in and out, the power of the depth. */
 export function writeHandCheck(context: PageContext): void {
   const { paper, one } = context;
   const row = reachToCheck(one);
-  const section = paper.chapter('Hand check', 'portrait', 330);
+  const section = chapter(paper, 'Hand check', 'portrait', 330);
   if (row === null) {
-    paper.paragraph(section, 'No reach has a known flow, so there is nothing to check by hand.', BODY);
+    section.paragraph('No reach has a known flow, so there is nothing to check by hand.');
     return;
   }
   writePlates(context, section, row);
@@ -50,7 +49,7 @@ function reachToCheck(one: ReportedCase): Checked | null {
   return null;
 }
 
-function writePlates({ paper, one }: PageContext, section: Element, row: Checked): void {
+function writePlates({ paper, one }: PageContext, section: Section, row: Checked): void {
   const { show } = one;
   const { viscosityPaS } = one.network.chip.fluid;
   const flow = Math.abs(row.flow_m3_s);
@@ -59,17 +58,13 @@ function writePlates({ paper, one }: PageContext, section: Element, row: Checked
   const peak = wall === 'floor' ? row.wall_shear_floor_peak_pa : row.wall_shear_side_peak_pa;
   const platesDrop = (12 * viscosityPaS * row.length_m * flow) / (long * short ** 3);
   const platesShear = (6 * viscosityPaS * flow) / (long * short ** 2);
-  paper.heading(section, 2, `Reach ${row.name} as parallel plates`);
-  paper.paragraph(section, whyThisReach(one), BODY);
-  paper.paragraph(
-    section,
+  section.heading(2, `Reach ${row.name} as parallel plates`);
+  section.paragraph(whyThisReach(one));
+  section.paragraph(
     `µ = ${formatNumber(viscosityPaS * 1000)} mPa s, L = ${show.text('length', row.length_m)} (duct length), Q = ${show.text('flow', flow)}, ` +
       `w = ${show.text('cross_length', long)}, h = ${show.text('cross_length', short)} (w the longer side, h the shorter).`,
-    BODY,
   );
-  drawTable(
-    paper,
-    section,
+  section.table(
     [
       {
         what: 'pressure drop',
@@ -95,11 +90,9 @@ function writePlates({ paper, one }: PageContext, section: Element, row: Checked
     ],
     { size: 7.5 },
   );
-  paper.paragraph(
-    section,
+  section.paragraph(
     'Plates have no side walls. The exact drop is larger by what the sides hold back; the exact peak is larger because the flow keeps away from the sides and ' +
       'so is stronger in the middle. For h/w = 0.1 the factors are 1.067 for both; for a square 2.371 and 1.601.',
-    BODY,
   );
   paper.y += 6;
 
@@ -115,33 +108,29 @@ function whyThisReach(one: ReportedCase): string {
     : 'The reach that matters most: no channel has a window, so the one with the largest wall shear.';
 }
 
-function writeBalance({ paper, one }: PageContext, section: Element): void {
+function writeBalance({ paper, one }: PageContext, section: Section): void {
   const { part, show } = one;
-  paper.heading(section, 2, 'Flows in and out');
+  section.heading(2, 'Flows in and out');
   const flows = part.ports.map(({ flow_m3_s }) => flow_m3_s).filter((flow) => flow !== null);
   const sum = (values: readonly number[]): number => values.reduce((total, value) => total + value, 0);
   const into = sum(flows.filter((flow) => flow > 0));
   const out = -sum(flows.filter((flow) => flow < 0));
   const unknown = part.ports.length - flows.length;
   const share = into === 0 && out === 0 ? 0 : Math.abs(into - out) / Math.max(into, out);
-  paper.paragraph(
-    section,
+  section.paragraph(
     `Into the chip ${show.text('flow', into)}, out of it ${show.text('flow', out)}: ${share === 0 ? 'they agree' : `they differ by ${formatNumber(share, 2)} of the larger`}.` +
       (unknown === 0 ? '' : ` Of ${unknown} ports the flow is not known.`),
-    BODY,
   );
   const { worst_imbalance, worst_node } = part.balance;
-  paper.paragraph(
-    section,
+  section.paragraph(
     worst_node === null
       ? 'No inner node to balance.'
       : `Largest imbalance at an inner node: ${formatNumber(worst_imbalance, 2)} of what flows through it, at ${worst_node}.`,
-    BODY,
   );
   paper.y += 6;
 }
 
-function writeDepth({ paper, one }: PageContext, section: Element, row: Checked): void {
+function writeDepth({ one }: PageContext, section: Section, row: Checked): void {
   const channel = one.network.chip.channels.find(({ name }) => name === row.channel);
   const { byDepth, byWidth } = sectionForm(channel?.profile ?? 'rectangle', row.width_m, row.depth_m);
   // isotropic: width = mask + π·depth/2, so the width grows with the depth
@@ -153,15 +142,11 @@ function writeDepth({ paper, one }: PageContext, section: Element, row: Checked)
     const share = 1.05 ** exponent - 1;
     return `${share > 0 ? '+' : ''}${formatNumber(share * 100, 3)} %`;
   };
-  paper.heading(section, 2, 'The power of the depth');
-  paper.paragraph(
-    section,
+  section.heading(2, 'The power of the depth');
+  section.paragraph(
     `In ${row.name} the resistance goes with depth to the power ${formatNumber(resistance)} (exact, at this width and depth). So 5 % more depth changes, in this reach:`,
-    BODY,
   );
-  drawTable(
-    paper,
-    section,
+  section.table(
     [
       ['flow', change(-resistance), '0 %'],
       ['pressure drop', '0 %', change(resistance)],

@@ -2,29 +2,26 @@ import { formatMm } from '../../runsheet/shown.ts';
 import { words } from '../columns.ts';
 import { quantityColumns } from '../quantities.ts';
 import { portQuantity } from '../result-schema.ts';
-import { BODY, type PageContext, SMALL } from './context.ts';
-import { drawTable } from './table.ts';
+import { type PageContext, SMALL } from './context.ts';
+import { chapter } from './section.ts';
 
 /** Where to drill or punch: from the lower left corner of the chip edge, and in drawing coordinates. */
 export function writeHoles({ paper, one, geometry }: PageContext): void {
   const { chip } = one.network;
-  const section = paper.chapter('Holes', 'portrait', 120);
+  const section = chapter(paper, 'Holes', 'portrait', 120);
   if (chip.ports.length === 0) {
-    paper.paragraph(section, 'The layout has no holes.', BODY);
+    section.paragraph('The layout has no holes.');
     return;
   }
   const corner = lowerLeft(chip.edge?.rings ?? [], geometry.bounds);
-  paper.paragraph(
-    section,
+  section.paragraph(
     `Seen from the channel side, as drawn. x to the right and y up from the lower left corner of ${chip.edge === null ? 'all that is drawn (there is no chip edge)' : `the rectangle round ${chip.edge.name}`}, ` +
       `which is ${formatMm(corner.x)}, ${formatMm(corner.y)} mm in the drawing; beside them the drawing's own coordinates, y down. Whoever works from the other side mirrors x.`,
     SMALL,
   );
   const { ports } = one.part;
   const columns = quantityColumns(portQuantity, ports, one.show);
-  drawTable(
-    paper,
-    section,
+  section.table(
     ports,
     [
       words('hole', ({ name }) => name, 'share'),

@@ -3,13 +3,14 @@ import { MAP_QUANTITIES } from '../map-quantities.ts';
 import { type PageContext, SMALL } from './context.ts';
 import { writeMap } from './paint-map.ts';
 import { POINTS_PER_MM } from './paper.ts';
+import { chapter } from './section.ts';
 
 const TEXT_POINTS = 44;
 
 /** Maps of wall shear, flow and residence time, as many on a page as fit: three of a wide chip, one of a tall one. */
 export function writeMaps({ paper, one, geometry, measure, readable }: PageContext): void {
-  const section = paper.chapter('Maps', 'portrait');
-  paper.paragraph(section, "Numbers beside names are in the legend's unit; all are in the tables.", SMALL);
+  const section = chapter(paper, 'Maps', 'portrait');
+  section.paragraph("Numbers beside names are in the legend's unit; all are in the tables.", SMALL);
   const heightMm = mapHeightMm(paper.bottom - paper.y, paper.width, geometry.bounds);
   for (const quantity of ['shear', 'flow', 'residence'] as const) {
     const drawing = drawMap(one, geometry, {
@@ -24,9 +25,8 @@ export function writeMaps({ paper, one, geometry, measure, readable }: PageConte
     });
     paper.need(drawing.heightMm * POINTS_PER_MM + TEXT_POINTS - 2);
     const { title } = MAP_QUANTITIES[quantity];
-    paper.heading(section, 2, `${title[0].toUpperCase()}${title.slice(1)}`);
+    section.heading(2, `${title[0].toUpperCase()}${title.slice(1)}`);
     writeMap(
-      paper,
       section,
       drawing,
       `The chip as drawn, coloured by ${title}; the numbers are in the table of reaches.`,

@@ -4,21 +4,18 @@ import { figures, words } from '../columns.ts';
 import { jointsText } from '../joints-text.ts';
 import { known } from '../known.ts';
 import type { ReportedCase } from '../report.ts';
-import { BODY, depthFrom, type PageContext } from './context.ts';
-import type { Element, Paper } from './paper.ts';
+import { depthFrom, type PageContext } from './context.ts';
 import { jointText } from './port-columns.ts';
-import { drawTable } from './table.ts';
+import { chapter, type Section } from './section.ts';
 
 /** The model in words, its formulas with their sources, and the depths and limits in force with where each came from. */
 export function writeModel({ paper, one }: PageContext): void {
   const { chip } = one.network;
-  const section = paper.chapter('Model', 'portrait', 500);
-  for (const text of modelTexts(chip)) paper.paragraph(section, text, BODY);
+  const section = chapter(paper, 'Model', 'portrait', 500);
+  for (const text of modelTexts(chip)) section.paragraph(text);
   paper.y += 4;
-  paper.heading(section, 2, 'Formulas and sources');
-  drawTable(
-    paper,
-    section,
+  section.heading(2, 'Formulas and sources');
+  section.table(
     FORMULAS,
     [
       words('what', ([what]) => what),
@@ -27,9 +24,9 @@ export function writeModel({ paper, one }: PageContext): void {
     ],
     { size: 6.8 },
   );
-  writeJoints(paper, section, one);
-  writeLayers(paper, section, chip);
-  writeLimits(paper, section, chip);
+  writeJoints(section, one);
+  writeLayers(section, chip);
+  writeLimits(section, chip);
 }
 
 function modelTexts(chip: Chip): readonly string[] {
@@ -92,11 +89,11 @@ const FORMULAS: readonly (readonly [string, string, string])[] = [
 ];
 
 /** Joints by kind, and what they come to beside plain centrelines. */
-function writeJoints(paper: Paper, section: Element, one: ReportedCase): void {
+function writeJoints(section: Section, one: ReportedCase): void {
   const { network } = one;
   if (network.joints.length === 0) return;
-  paper.heading(section, 2, 'Joints');
-  drawTable(paper, section, network.joints, [
+  section.heading(2, 'Joints');
+  section.table(network.joints, [
     words('kind', ({ kind }) => kind, 'share'),
     figures('number', ({ count }) => String(count)),
     figures('together they add', ({ addedMm }) => lengthText(addedMm), 'mm'),
@@ -105,18 +102,16 @@ function writeJoints(paper: Paper, section: Element, one: ReportedCase): void {
     figures('y', ({ yMm }) => formatMm(yMm), 'mm'),
   ]);
   const joints = jointsText(network.joints);
-  if (joints !== null && network.chip.joints === 'resolved') paper.paragraph(section, `${joints}.`, BODY);
+  if (joints !== null && network.chip.joints === 'resolved') section.paragraph(`${joints}.`);
   const sum = (lengths: Float64Array): number => lengths.reduce((total, length) => total + length, 0);
   const centreline = lengthText(sum(network.reachCentrelineMm));
   const counted = lengthText(sum(network.reachDuctMm));
-  paper.paragraph(
-    section,
+  section.paragraph(
     network.chip.joints === 'resolved'
       ? `All reaches together: ${counted} mm of duct as counted here, ${centreline} mm by centrelines alone.`
       : `The numbers of this document count centrelines: ${counted} mm of duct in all. With joints: resolved the lengths above would be added.`,
-    BODY,
   );
-  writeCentrelineFlows(paper, section, one);
+  writeCentrelineFlows(section, one);
 }
 
 /** Without a depth there may be no length either. */
@@ -127,17 +122,11 @@ function lengthText(mm: number): string {
 const PORT_BOUND = 60;
 
 /** What centreline counting would have said of each port's flow, beside what is said here. */
-function writeCentrelineFlows(
-  paper: Paper,
-  section: Element,
-  { network, part, show, centrelineFlow }: ReportedCase,
-): void {
+function writeCentrelineFlows(section: Section, { network, part, show, centrelineFlow }: ReportedCase): void {
   if (centrelineFlow === null || network.chip.joints !== 'resolved') return;
   const flows = centrelineFlow().portFlow;
   const ports = part.ports.slice(0, PORT_BOUND);
-  drawTable(
-    paper,
-    section,
+  section.table(
     ports.map((port, i) => ({ port, centreline: flows[i] })),
     [
       words('port', ({ port }) => port.name, 'share'),
@@ -146,15 +135,15 @@ function writeCentrelineFlows(
       figures('joints not resolved could move by ±', ({ port }) => jointText(port)),
     ],
   );
-  if (part.ports.length > ports.length) paper.paragraph(section, `… of ${part.ports.length} ports.`, BODY);
+  if (part.ports.length > ports.length) section.paragraph(`… of ${part.ports.length} ports.`);
 }
 
 const LAYER_BOUND = 500;
 
-function writeLayers(paper: Paper, section: Element, chip: Chip): void {
+function writeLayers(section: Section, chip: Chip): void {
   if (chip.layers.length === 0) return;
-  paper.heading(section, 2, 'Layers');
-  drawTable(paper, section, chip.layers.slice(0, LAYER_BOUND), [
+  section.heading(2, 'Layers');
+  section.table(chip.layers.slice(0, LAYER_BOUND), [
     words('layer', ({ name }) => (name === '' ? '(none)' : name), 'share'),
     words('plane', ({ plane }) => chip.planes[plane] ?? '', 'share'),
     figures('depth', ({ depthM }) => (Number.isNaN(depthM) ? '–' : formatNumber(depthM * 1e6)), 'µm'),
@@ -163,14 +152,12 @@ function writeLayers(paper: Paper, section: Element, chip: Chip): void {
   ]);
 }
 
-function writeLimits(paper: Paper, section: Element, { limits, process, layers }: Chip): void {
-  paper.heading(section, 2, 'Limits');
-  paper.paragraph(
-    section,
+function writeLimits(section: Section, { limits, process, layers }: Chip): void {
+  section.heading(2, 'Limits');
+  section.paragraph(
     process === null
       ? 'No process is named, so only limits of the run sheet and the defaults apply.'
       : `Process: ${process}.`,
-    BODY,
   );
   const micrometres = (metres: number): string => `${formatNumber(metres * 1e6)} µm`;
   const millimetres = (metres: number): string => `${formatNumber(metres * 1e3)} mm`;
@@ -203,12 +190,12 @@ function writeLimits(paper: Paper, section: Element, { limits, process, layers }
     ),
     limitRow('stiffness', limits.stiffnessPa, (pascals) => `${formatNumber(pascals / 1e6)} MPa`),
   ];
-  drawTable(paper, section, rows, [
+  section.table(rows, [
     words('limit', ([what]) => what),
     words('value', ([, value]) => value),
     words('from', ([, , origin]) => origin, 'share'),
   ]);
-  paper.paragraph(section, "The relative slack of every comparison is 1e-9, in the drawing's favour.", BODY);
+  section.paragraph("The relative slack of every comparison is 1e-9, in the drawing's favour.");
 }
 
 function limitRow<T>(

@@ -9,10 +9,12 @@ import {
   type ScaleBar,
 } from '../map-types.ts';
 import { SMALL } from './context.ts';
-import { type Element, type Paper, POINTS_PER_MM } from './paper.ts';
+import { type Paper, POINTS_PER_MM } from './paper.ts';
+import type { Section } from './section.ts';
 
 /** Paints a map over the page's width as a tagged figure, what must be said of it below; its texts were measured in the paper's font. */
-export function writeMap(paper: Paper, parent: Element, drawing: MapDrawing, alt: string, more = ''): void {
+export function writeMap(section: Section, drawing: MapDrawing, alt: string, more = ''): void {
+  const { paper } = section;
   const { left: x, y } = paper;
   const paint = (): void => {
     inMillimetres(paper, x, y, () => {
@@ -33,9 +35,9 @@ export function writeMap(paper: Paper, parent: Element, drawing: MapDrawing, alt
     paintScaleText(paper, drawing.scaleBar, x, y, 0.8);
     paintLegendTexts(paper, drawing, x, y);
   };
-  paper.tagged(parent, 'Figure', paint, { alt });
+  section.figure(alt, paint);
   paper.y += drawing.heightMm * POINTS_PER_MM;
-  paper.paragraph(parent, `${mapNotes(drawing)}${more}`, SMALL);
+  section.paragraph(`${mapNotes(drawing)}${more}`, SMALL);
 }
 
 /** Runs `paint` with the unit 1 mm and the origin at x, y. */

@@ -44,7 +44,8 @@ export class Paper {
   /** Widths of texts at size 1, by weight. */
   private readonly plainWidths = new Map<string, number>();
   private readonly boldWidths = new Map<string, number>();
-  private orientation: 'portrait' | 'landscape' = 'portrait';
+  /** Of the page that is written on; none yet. */
+  private orientation: 'portrait' | 'landscape' | null = null;
 
   constructor(options: {
     readonly fonts: Fonts;
@@ -100,7 +101,7 @@ export class Paper {
     return this.doc.page.height - MARGIN - 4;
   }
 
-  newPage(orientation: 'portrait' | 'landscape' = this.orientation): void {
+  newPage(orientation: 'portrait' | 'landscape' = this.orientation ?? 'portrait'): void {
     this.orientation = orientation;
     const [short, long] = this.size;
     this.doc.addPage({
@@ -110,13 +111,10 @@ export class Paper {
     this.y = this.top;
   }
 
-  /** A part of the document with its title at the top of a page, or below the last one where `height` is left on a page of this kind. */
-  chapter(title: string, orientation: 'portrait' | 'landscape', height = Number.POSITIVE_INFINITY): Element {
+  /** Turns to a new page unless this one is of the kind wanted and at least `height` is left on it. */
+  part(orientation: 'portrait' | 'landscape', height: number): void {
     if (this.orientation !== orientation || this.y + height > this.bottom) this.newPage(orientation);
     else if (this.y > this.top) this.y += 10;
-    const section = this.section();
-    this.heading(section, 1, title);
-    return section;
   }
 
   /** Turns to a new page when less than this is left. */
@@ -158,32 +156,8 @@ export class Paper {
     this.doc.endMarkedContent();
   }
 
-  /** Heading at the left margin, with a bookmark for levels 1 and 2. */
-  heading(parent: Element, level: 1 | 2 | 3, text: string): void {
-    const size = level === 1 ? 13 : level === 2 ? 10 : 8.5;
-    this.need(size * 1.3 + 30);
-    if (level === 1) this.bookmark(text);
-    this.tagged(parent, `H${level}`, () => {
-      const style = { size, weight: 'bold' } as const;
-      this.put(this.clip(text, this.width, style), this.left, this.y, style);
-    });
-    this.y += size * 1.3 + 3;
-  }
-
   bookmark(text: string): void {
     this.doc.outline.addItem(this.readable(text, 'regular'));
-  }
-
-  /** Wrapped text over the page's width, or a column's. Turns pages between lines. */
-  paragraph(
-    parent: Element,
-    text: string,
-    style: TextStyle,
-    at: { readonly x?: number; readonly width?: number } = {},
-  ): void {
-    const x = at.x ?? this.left;
-    this.lines(parent, 'P', this.wrap(text, at.width ?? this.right - x, style), x, style);
-    this.y += 2;
   }
 
   /** Lines of readable text below each other. Turns pages between them, and tags what stands on each. */

@@ -2,12 +2,13 @@ import { countText } from '../../findings/words.ts';
 import { drawMap } from '../map.ts';
 import type { PageContext } from './context.ts';
 import { writeMap } from './paint-map.ts';
-import { type Element, POINTS_PER_MM } from './paper.ts';
+import { POINTS_PER_MM } from './paper.ts';
+import type { Section } from './section.ts';
 
 /** The chip coloured by pressure, between here and `below` points above the foot of the page. */
 export function writePressureMap(
   { paper, one, geometry, measure, readable }: PageContext,
-  section: Element,
+  section: Section,
   below: number,
 ): void {
   const room = paper.bottom - below - paper.y - 90;
@@ -24,5 +25,5 @@ export function writePressureMap(
   const counts = one.part.counts;
   const alt = `The chip as drawn, ${countText(counts.channels, 'channel')} coloured by pressure, ${countText(counts.ports, 'port')} named; the numbers are in the tables.`;
   const numbers = drawing.markers.length === 0 ? '' : ' Numbers are those of the findings.';
-  writeMap(paper, section, drawing, alt, numbers);
+  writeMap(section, drawing, alt, numbers);
 }

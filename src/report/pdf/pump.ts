@@ -16,9 +16,9 @@ import {
   TITLE,
   writeCharts,
 } from './chart.ts';
-import { BODY, type PageContext, SMALL } from './context.ts';
-import type { Element, Paper } from './paper.ts';
-import { drawTable } from './table.ts';
+import { type PageContext, SMALL } from './context.ts';
+import type { Paper } from './paper.ts';
+import { chapter, type Section } from './section.ts';
 
 /** Curves drawn; of more targets the tables tell. */
 const MOST_CURVES = 24;
@@ -27,25 +27,25 @@ const MOST_CURVES = 24;
 export function writePump({ paper, one }: PageContext): void {
   const { pump, network, show } = one;
   if (pump === undefined) return;
-  const section = paper.chapter(ofCase('Pump settings', one), 'portrait');
-  paper.paragraph(section, LEGEND, SMALL);
-  paper.heading(section, 2, 'Targets');
-  drawTable(paper, section, pump.targets, targetColumns(show), { size: 7.5 });
-  paper.heading(section, 2, 'Settings');
+  const section = chapter(paper, ofCase('Pump settings', one), 'portrait');
+  section.paragraph(LEGEND, SMALL);
+  section.heading(2, 'Targets');
+  section.table(pump.targets, targetColumns(show), { size: 7.5 });
+  section.heading(2, 'Settings');
   const columns: readonly Column<FoundTarget>[] = [
     ...settingColumns(one, 'pressure'),
     words('breaks', (target) => brokenRules(one, target) || 'no limit', 'wrap'),
     words('pump limits', (target) => limitsText(one, target), 'wrap'),
   ];
-  drawTable(paper, section, pump.targets, columns, { size: 7.5 });
+  section.table(pump.targets, columns, { size: 7.5 });
   for (const target of pump.targets) {
     const text = rangeText(network, target, show);
-    if (text !== null) paper.paragraph(section, `${text}.`, BODY);
+    if (text !== null) section.paragraph(`${text}.`);
   }
   const curves = pump.targets.slice(0, MOST_CURVES).map((target) => pumpCurve(network, target, show));
-  writeCurves(paper, section, curves);
+  writeCurves(section, curves);
   const more = pump.targets.length - MOST_CURVES;
-  if (more > 0) paper.paragraph(section, `… and ${more} more targets, in the tables above.`, SMALL);
+  if (more > 0) section.paragraph(`… and ${more} more targets, in the tables above.`, SMALL);
 }
 
 const LEGEND =
@@ -54,10 +54,10 @@ const LEGEND =
 
 const HEIGHT = 168;
 
-function writeCurves(paper: Paper, section: Element, curves: readonly PumpCurve[]): void {
-  paper.heading(section, 2, 'Setting against target');
+function writeCurves(section: Section, curves: readonly PumpCurve[]): void {
+  const { paper } = section;
+  section.heading(2, 'Setting against target');
   writeCharts(
-    paper,
     section,
     curves,
     { perRow: 2, gap: 16, height: HEIGHT + 8 },

@@ -7,7 +7,7 @@ import type { ReportedCase } from '../report.ts';
 import type { ReachRow } from '../result-rows.ts';
 import { reachQuantity } from '../result-schema.ts';
 import { type PageContext, SMALL } from './context.ts';
-import { drawTable } from './table.ts';
+import { chapter } from './section.ts';
 
 /** All reaches are printed up to here; of a larger network the first ones, and the rest is in the CSV and JSON. */
 const REACH_BOUND = 2000;
@@ -17,14 +17,12 @@ const REACHES_OF_MANY = 500;
 export function writeReaches({ paper, one }: PageContext): void {
   const { network } = one;
   if (network.reachCount === 0) return;
-  const section = paper.chapter('Reaches', 'landscape');
-  paper.paragraph(section, LEGEND, SMALL);
+  const section = chapter(paper, 'Reaches', 'landscape');
+  section.paragraph(LEGEND, SMALL);
   const order = byChannel(one).subarray(0, network.reachCount <= REACH_BOUND ? REACH_BOUND : REACHES_OF_MANY);
   const rows = Array.from(order, (reach) => one.part.reaches.at(reach));
   const outside = outsideWindows(one);
-  drawTable(
-    paper,
-    section,
+  section.table(
     rows,
     [
       reachName(outside),
@@ -39,8 +37,7 @@ export function writeReaches({ paper, one }: PageContext): void {
   );
   const more = network.reachCount - rows.length;
   if (more > 0) {
-    paper.paragraph(
-      section,
+    section.paragraph(
       `… and ${more} more of ${countText(network.reachCount, 'reach', 'reaches')}: all are in the CSV (--formats csv) and JSON (--formats json) files.`,
       SMALL,
     );

@@ -5,7 +5,7 @@ import type { ReportedCase } from '../report.ts';
 import type { SegmentRow } from '../result-rows.ts';
 import { segmentQuantity } from '../result-schema.ts';
 import { type PageContext, SMALL } from './context.ts';
-import { drawTable } from './table.ts';
+import { chapter, Section } from './section.ts';
 
 /** Above this the segments are in the CSV and JSON files only. */
 const SEGMENT_BOUND = 2000;
@@ -15,22 +15,19 @@ export function writeSegments({ paper, one }: PageContext): void {
   const { network } = one;
   if (network.segmentCount === 0) return;
   if (network.segmentCount > SEGMENT_BOUND) {
-    const section = paper.section();
-    paper.heading(section, 2, 'Segments');
-    paper.paragraph(
-      section,
+    const section = new Section(paper);
+    section.heading(2, 'Segments');
+    section.paragraph(
       `The ${network.segmentCount} segments are not printed: all are in the CSV (--formats csv) and JSON (--formats json) files.`,
       SMALL,
     );
     return;
   }
-  const section = paper.chapter('Segments', 'landscape', 150);
-  paper.paragraph(section, LEGEND, SMALL);
+  const section = chapter(paper, 'Segments', 'landscape', 150);
+  section.paragraph(LEGEND, SMALL);
   const rows = printedRows(one);
   const columns = quantityColumns(segmentQuantity, rows, one.show);
-  drawTable(
-    paper,
-    section,
+  section.table(
     rows,
     [
       words('segment', ({ name }) => name, 'share'),

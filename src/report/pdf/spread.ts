@@ -25,9 +25,9 @@ import {
   TITLE,
   writeCharts,
 } from './chart.ts';
-import { BODY, BODY_BOLD, type PageContext, SMALL } from './context.ts';
-import type { Element, Paper } from './paper.ts';
-import { drawTable } from './table.ts';
+import { BODY_BOLD, type PageContext, SMALL } from './context.ts';
+import type { Paper } from './paper.ts';
+import { chapter, type Section } from './section.ts';
 
 const MOST_CHARTS = 24;
 const MOST_ROWS = 1000;
@@ -37,20 +37,20 @@ const MOST_BARS = 20;
 export function writeSpread({ paper, one }: PageContext): void {
   const { spread, show } = one;
   if (spread === undefined) return;
-  const section = paper.chapter(ofCase('Spread', one), 'portrait');
+  const section = chapter(paper, ofCase('Spread', one), 'portrait');
   if (spread.draws < spread.asked) {
     const text = `Stopped before its end: ${spread.draws} of ${spread.asked} draws were made.`;
-    paper.paragraph(section, text, BODY_BOLD);
+    section.paragraph(text, BODY_BOLD);
   }
-  paper.paragraph(section, sentence(yieldText(spread)), BODY_BOLD);
+  section.paragraph(sentence(yieldText(spread)), BODY_BOLD);
   for (const text of [cornerText(spread, show), ...remarks(spread)]) {
-    if (text !== null) paper.paragraph(section, sentence(text), BODY);
+    if (text !== null) section.paragraph(sentence(text));
   }
-  writeTolerances(paper, section, spread, show);
-  writeCauses(paper, section, spread);
-  writeDistributions(paper, section, spread, show);
-  writeNumbers(paper, section, spread, show);
-  paper.paragraph(section, method(spread), SMALL);
+  writeTolerances(section, spread, show);
+  writeCauses(section, spread);
+  writeDistributions(section, spread, show);
+  writeNumbers(section, spread, show);
+  section.paragraph(method(spread), SMALL);
 }
 
 function sentence(text: string): string {
@@ -68,9 +68,9 @@ function method({ seed, draws }: Spread): string {
   );
 }
 
-function writeTolerances(paper: Paper, section: Element, { causes }: Spread, show: Show): void {
-  paper.heading(section, 2, 'Tolerances');
-  drawTable(paper, section, causes.slice(0, MOST_ROWS), [
+function writeTolerances(section: Section, { causes }: Spread, show: Show): void {
+  section.heading(2, 'Tolerances');
+  section.table(causes.slice(0, MOST_ROWS), [
     words('tolerance', ({ key }) => key, 'share'),
     words('what varies', ({ text }) => text, 'share'),
     words('by', (cause) => toleranceText(cause, show)),
@@ -82,14 +82,14 @@ function writeTolerances(paper: Paper, section: Element, { causes }: Spread, sho
 const BAR = '#1b4965';
 const CURVE = '#b05a00';
 
-function writeCauses(paper: Paper, section: Element, spread: Spread): void {
+function writeCauses(section: Section, spread: Spread): void {
+  const { paper } = section;
   const overall = overallShares(spread);
   if (overall === null) return;
   const ranked = rankedCauses(overall.shares, spread.causes).slice(0, MOST_BARS);
   const of = overall.over === 'windows' ? 'every number that a window is set for' : 'every number that moves';
-  paper.heading(section, 2, 'Which tolerance to pay for');
-  paper.paragraph(
-    section,
+  section.heading(2, 'Which tolerance to pay for');
+  section.paragraph(
     `Share of the variance that each tolerance brings, as a mean over ${of} (first order). Halving a tolerance takes away three quarters of its share.`,
     SMALL,
   );
@@ -99,9 +99,7 @@ function writeCauses(paper: Paper, section: Element, spread: Spread): void {
   for (let done = 0; done < ranked.length; ) {
     const room = Math.max(1, Math.floor((paper.bottom - paper.y) / step));
     const part = ranked.slice(done, done + room);
-    paper.tagged(section, 'Figure', () => paintCauses(paper, part, ranked[0].share, step), {
-      alt: `Causes of spread: ${alt}.`,
-    });
+    section.figure(`Causes of spread: ${alt}.`, () => paintCauses(paper, part, ranked[0].share, step));
     paper.y += part.length * step + 4;
     done += part.length;
     if (done < ranked.length) paper.newPage();
@@ -130,7 +128,8 @@ function rounded(share: number): number {
 
 const CHART_HEIGHT = 104;
 
-function writeDistributions(paper: Paper, section: Element, spread: Spread, show: Show): void {
+function writeDistributions(section: Section, spread: Spread, show: Show): void {
+  const { paper } = section;
   const charts: DistributionChart[] = [];
   let more = 0;
   for (const output of byRoom(spread.outputs)) {
@@ -139,21 +138,19 @@ function writeDistributions(paper: Paper, section: Element, spread: Spread, show
     else if (charts.length >= MOST_CHARTS) more++;
   }
   if (charts.length === 0) return;
-  paper.heading(section, 2, 'Distributions of what has a window');
-  paper.paragraph(
-    section,
+  section.heading(2, 'Distributions of what has a window');
+  section.paragraph(
     'Bars: the draws. Line: first order. Shaded: what is asked. Dashed: the nominal value. Those with least room first.',
     SMALL,
   );
   writeCharts(
-    paper,
     section,
     charts,
     { perRow: 3, gap: 12, height: CHART_HEIGHT + 6 },
     (chart, x, y, width) => paintDistribution(paper, chart, x, y, width),
     ({ alt }) => alt,
   );
-  if (more > 0) paper.paragraph(section, `… and ${more} more, in the table.`, SMALL);
+  if (more > 0) section.paragraph(`… and ${more} more, in the table.`, SMALL);
 }
 
 /** Numbers of windows, those with the fewest standard deviations of room first. */
@@ -225,21 +222,20 @@ function paintBars(paper: Paper, chart: DistributionChart, field: Field): void {
 
 /* ---------- numbers ---------- */
 
-function writeNumbers(paper: Paper, section: Element, spread: Spread, show: Show): void {
+function writeNumbers(section: Section, spread: Spread, show: Show): void {
+  const { paper } = section;
   paper.newPage('landscape');
-  paper.heading(section, 2, 'Numbers');
+  section.heading(2, 'Numbers');
   const outputs = spread.outputs.slice(0, MOST_ROWS);
   const { what, quantity, unit, nominal, mean, low, high, sd, linearSd, linear, asked, kept, causes } =
     spreadColumns(spread, show);
-  drawTable(
-    paper,
-    section,
+  section.table(
     outputs,
     [what, quantity, unit, nominal, mean, low, high, sd, linearSd, linear, asked, kept, causes],
     { size: 6.5, group: ({ on }, i) => (on === outputs[i - 1]?.on ? null : GROUPS[on]) },
   );
   const more = spread.outputs.length - MOST_ROWS;
-  if (more > 0) paper.paragraph(section, `… and ${more} more, in the CSV and JSON files.`, SMALL);
+  if (more > 0) section.paragraph(`… and ${more} more, in the CSV and JSON files.`, SMALL);
 }
 
 const GROUPS: Readonly<Record<SpreadOutput['on'], string>> = {
