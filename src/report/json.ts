@@ -64,32 +64,12 @@ function* tablePieces(table: Iterable<unknown>, key: string, indent: string): Ge
 
 /** JSON of one value without whitespace; −0 is written as 0. */
 function jsonValue(value: unknown, path: string): string {
-  switch (typeof value) {
-    case 'number':
-      if (!Number.isFinite(value))
-        throw new RangeError(`${path} is ${value}: a result holds finite numbers or null`);
-      return value === 0 ? '0' : String(value);
-    case 'string':
-      return JSON.stringify(value);
-    case 'boolean':
-      return value ? 'true' : 'false';
-    case 'object':
-      if (value === null) return 'null';
-      return Array.isArray(value) ? jsonArray(value, path) : jsonObject(value, path);
-    default:
-      throw new TypeError(`${path} is a ${typeof value}: JSON can't hold it`);
-  }
-}
-
-function jsonArray(values: readonly unknown[], path: string): string {
-  return `[${values.map((value, i) => jsonValue(value, `${path}[${i}]`)).join(',')}]`;
-}
-
-function jsonObject(object: object, path: string): string {
-  let text = '';
-  for (const [key, value] of Object.entries(object)) {
-    if (value === undefined) continue;
-    text += `${text === '' ? '' : ','}${JSON.stringify(key)}:${jsonValue(value, `${path}.${key}`)}`;
-  }
-  return `{${text}}`;
+  return JSON.stringify(value, (key, inner: unknown) => {
+    // JSON.stringify itself would write null
+    if (typeof inner === 'number' && !Number.isFinite(inner))
+      throw new RangeError(
+        `${[path, key].filter(Boolean).join('.')} is ${inner}: a result holds finite numbers or null`,
+      );
+    return inner;
+  });
 }

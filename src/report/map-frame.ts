@@ -35,6 +35,11 @@ export function paperFrame(origin: Point, scale: number, offset: Point = { x: 0,
   };
 }
 
+/** The chip edge's rings. */
+export function edgeOn(frame: PaperFrame, { edge }: Chip): number[][] {
+  return (edge?.rings ?? []).map((ring) => frame.points(ring));
+}
+
 export function holesOn(frame: PaperFrame, ports: Chip['ports']): MapHole[] {
   return ports.map(({ name, xMm, yMm, radiusMm }) => ({
     name,

@@ -1,7 +1,7 @@
 import { formatNumber, type Unit } from '../runsheet/shown.ts';
 import { type LabelGround, type LabelWish, placeLabels } from './label-placement.ts';
 import { labelWish, shortName } from './label-wish.ts';
-import type { PaperFrame } from './map-frame.ts';
+import { edgeOn, type PaperFrame } from './map-frame.ts';
 import { type Box, type ChipGeometry, stripHalfWidthMm } from './map-geometry.ts';
 import { MAP_QUANTITIES } from './map-quantities.ts';
 import type { MapDrawing, MapHole, MapLabel, MapOptions } from './map-types.ts';
@@ -86,13 +86,12 @@ function reachText({ one, values, unit, options }: Labelled, reach: number): str
 function edgeLines({ network }: ReportedCase, frame: PaperFrame): LabelGround['lines'] {
   const rings = network.chip.edge?.rings ?? [];
   if (rings.reduce((sum, ring) => sum + ring.length / 2, 0) > 400) return [];
-  return rings.flatMap((ring) => {
-    const points = frame.points(ring);
-    return Array.from(
+  return edgeOn(frame, network.chip).flatMap((points) =>
+    Array.from(
       { length: points.length / 2 - 1 },
       (_, i) => [points[2 * i], points[2 * i + 1], points[2 * i + 2], points[2 * i + 3]] as const,
-    );
-  });
+    ),
+  );
 }
 
 /** Reaches with a window first, then the longest. */

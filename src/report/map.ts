@@ -2,7 +2,7 @@ import { countText } from '../findings/words.ts';
 import { formatNumber } from '../runsheet/shown.ts';
 import { clippedLine } from './clipped-line.ts';
 import { colourScale, niceStep } from './colour-scale.ts';
-import { holesOn, type PaperFrame, paperFrame } from './map-frame.ts';
+import { edgeOn, holesOn, type PaperFrame, paperFrame } from './map-frame.ts';
 import type { Box, ChipGeometry } from './map-geometry.ts';
 import { mapLabels } from './map-labels.ts';
 import { legendOf } from './map-legend.ts';
@@ -32,7 +32,7 @@ export function drawMap(one: ReportedCase, geometry: ChipGeometry, options: MapO
     widthMm: area.width,
     heightMm: figure.heightMm,
     scale: frame.scale,
-    edge: (network.chip.edge?.rings ?? []).map((ring) => frame.points(ring)),
+    edge: edgeOn(frame, network.chip),
     ground: groundStrokes(geometry, frame),
     reaches: reachStrokes(one, frame, values, scaleOfColour, options.quantity),
     holes,

@@ -3,7 +3,7 @@ import { formatNumber } from '../runsheet/shown.ts';
 import { niceStep } from './colour-scale.ts';
 import { type LabelWish, placeLabels } from './label-placement.ts';
 import { labelWish, shortName } from './label-wish.ts';
-import { holesOn, type PaperFrame, paperFrame } from './map-frame.ts';
+import { edgeOn, holesOn, type PaperFrame, paperFrame } from './map-frame.ts';
 import { type Box, type ChipGeometry, stripHalfWidthMm } from './map-geometry.ts';
 import { paintedWidthMm, RIM_COLOUR } from './map-strokes.ts';
 import type { MapHole, MapStroke, Picture, PictureOptions, ScaleBar } from './map-types.ts';
@@ -55,7 +55,7 @@ export function drawPlace(
   return {
     widthMm: options.widthMm,
     viewHeightMm: options.heightMm,
-    edge: (geometry.chip.edge?.rings ?? []).map((ring) => frame.points(ring)),
+    edge: edgeOn(frame, geometry.chip),
     strokes: strokesOf(geometry, pieces, named, frame),
     holes,
     mark,

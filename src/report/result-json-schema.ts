@@ -17,10 +17,6 @@ export function resultJsonSchema(): object {
     title: 'rillcheck result',
     description:
       'Result of a chip check: SI units, the unit in each key; a number that does not exist is null.',
-    ...withoutSchemaKey(schema),
+    ...schema,
   };
-}
-
-function withoutSchemaKey(schema: object): object {
-  return Object.fromEntries(Object.entries(schema).filter(([key]) => key !== '$schema'));
 }

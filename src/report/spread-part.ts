@@ -11,10 +11,7 @@ export function spreadPartOf(spread: Spread): SpreadPart {
     draws_outside_model: spread.outside,
     seed: spread.seed,
     outputs: outputs.map((output) => ({
-      on: output.on,
-      name: output.name,
-      quantity: output.quantity,
-      unit: output.unit,
+      ...spokenOf(output),
       nominal: known(output.nominal),
       mean: known(output.mean),
       sd: known(output.sd),
@@ -40,10 +37,7 @@ export function spreadPartOf(spread: Spread): SpreadPart {
       corner === null
         ? null
         : {
-            on: outputs[corner.output].on,
-            name: outputs[corner.output].name,
-            quantity: outputs[corner.output].quantity,
-            unit: outputs[corner.output].unit,
+            ...spokenOf(outputs[corner.output]),
             limit: corner.limit,
             room_sd: corner.room,
             value: known(corner.value),
@@ -51,6 +45,10 @@ export function spreadPartOf(spread: Spread): SpreadPart {
             at: Object.fromEntries(causes.map(({ key }, cause) => [key, END[corner.signs[cause] + 1]])),
           },
   };
+}
+
+function spokenOf({ on, name, quantity, unit }: Spread['outputs'][number]) {
+  return { on, name, quantity, unit };
 }
 
 const END = ['lower', 'each its own', 'upper'] as const;

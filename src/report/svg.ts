@@ -51,11 +51,14 @@ export function svgPicture(one: ReportedCase, options: SvgOptions): string {
     `<title>${escapeXml(title)}</title>\n`,
     `<desc>${escapeXml(`${verdictLine(one.part.verdict, one.part.counts)}. ${mapNotes(drawing)}`)}</desc>\n`,
     `<rect width="${mm(drawing.widthMm)}" height="${mm(height)}" fill="#ffffff"/>\n`,
-    ...unreadLines(drawing),
+    ...outline(drawing.unread.under, `fill="none" stroke="${PALE_LINE}" stroke-width="0.2"`),
     ...edge(drawing),
     ...ground(drawing),
     ...reaches(drawing, one),
-    ...obstacles(drawing),
+    ...outline(
+      drawing.unread.over,
+      `fill="${PALE_FILL}" fill-rule="evenodd" stroke="${PALE_LINE}" stroke-width="0.15"`,
+    ),
     ...holes(drawing, one),
     ...labels(drawing, one),
     ...foot(drawing),
@@ -65,45 +68,31 @@ export function svgPicture(one: ReportedCase, options: SvgOptions): string {
 }
 
 function edge({ edge: rings }: MapDrawing): string[] {
-  return rings.map(
-    (ring) => `<path d="${pathData(ring)}" fill="none" stroke="#606060" stroke-width="0.25"/>\n`,
-  );
+  return rings.flatMap((ring) => outline([ring], 'fill="none" stroke="#606060" stroke-width="0.25"'));
 }
 
-function unreadLines({ unread }: MapDrawing): string[] {
-  if (unread.under.length === 0) return [];
-  const data = unread.under.map(pathData).join('');
-  return [`<path d="${data}" fill="none" stroke="${PALE_LINE}" stroke-width="0.2"/>\n`];
-}
-
-function obstacles({ unread }: MapDrawing): string[] {
-  if (unread.over.length === 0) return [];
-  const data = unread.over.map(pathData).join('');
-  return [
-    `<path d="${data}" fill="${PALE_FILL}" fill-rule="evenodd" stroke="${PALE_LINE}" stroke-width="0.15"/>\n`,
-  ];
+/** Lines or rings as one path; nothing for none. */
+function outline(lines: readonly (readonly number[])[], look: string): string[] {
+  return lines.length === 0 ? [] : [`<path d="${lines.map(pathData).join('')}" ${look}/>\n`];
 }
 
 function ground({ ground: strokes }: MapDrawing): string[] {
-  return [
-    '<g fill="none" stroke-linejoin="round">\n',
-    ...strokes.map((stroke) => `${strokePath(stroke)}\n`),
-    '</g>\n',
-  ];
+  return strokeGroup(strokes.map((stroke) => `${strokePath(stroke)}\n`));
+}
+
+function strokeGroup(paths: readonly string[]): string[] {
+  return ['<g fill="none" stroke-linejoin="round">\n', ...paths, '</g>\n'];
 }
 
 function reaches(drawing: MapDrawing, one: ReportedCase): string[] {
   const title = drawing.reaches.length > LONG_TITLES ? shortTitle : reachTitle;
-  return [
-    '<g fill="none" stroke-linejoin="round">\n',
-    ...drawing.reaches.map(({ reach, strokes }) => {
-      const hover = `<title>${escapeXml(title(one, reach))}</title>`;
-      return strokes.length === 1
-        ? `${strokePath(strokes[0], hover)}\n`
-        : `<g>${hover}${strokes.map((stroke) => strokePath(stroke)).join('')}</g>\n`;
-    }),
-    '</g>\n',
-  ];
+  const paths = drawing.reaches.map(({ reach, strokes }) => {
+    const hover = `<title>${escapeXml(title(one, reach))}</title>`;
+    return strokes.length === 1
+      ? `${strokePath(strokes[0], hover)}\n`
+      : `<g>${hover}${strokes.map((stroke) => strokePath(stroke)).join('')}</g>\n`;
+  });
+  return strokeGroup(paths);
 }
 
 /** Above this many reaches their titles hold what fits a line, to keep the picture openable. */

@@ -22,31 +22,25 @@ export function writeHandCheck(context: PageContext): void {
 }
 
 /** A reach of which everything is known and something flows. */
-type Checked = ReachRow & {
-  readonly flow_m3_s: number;
-  readonly pressure_drop_pa: number;
-  readonly width_m: number;
-  readonly depth_m: number;
-  readonly wall_shear_floor_mean_pa: number;
-  readonly wall_shear_floor_peak_pa: number;
-  readonly wall_shear_side_peak_pa: number;
-  readonly resistance_pa_s_m3: number;
-};
+type Checked = ReachRow &
+  Readonly<
+    Record<
+      | 'flow_m3_s'
+      | 'pressure_drop_pa'
+      | 'width_m'
+      | 'depth_m'
+      | 'wall_shear_floor_peak_pa'
+      | 'wall_shear_side_peak_pa',
+      number
+    >
+  >;
 
 function reachToCheck(one: ReportedCase): Checked | null {
-  for (const row of reachesThatMatter(one, 50).rows) {
-    if (
-      row.flow_m3_s !== null &&
-      row.flow_m3_s !== 0 &&
-      row.width_m !== null &&
-      row.depth_m !== null &&
-      row.pressure_drop_pa !== null
-    ) {
-      // with width, depth and flow known, pressure drop, shear and resistance are
-      return row as Checked;
-    }
-  }
-  return null;
+  const known = reachesThatMatter(one, 50).rows.find(
+    (row) => row.flow_m3_s && row.width_m !== null && row.depth_m !== null && row.pressure_drop_pa !== null,
+  );
+  // with width, depth and flow known, pressure drop and shear are
+  return known === undefined ? null : (known as Checked);
 }
 
 function writePlates({ paper, one }: PageContext, section: Section, row: Checked): void {
