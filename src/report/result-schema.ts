@@ -18,14 +18,14 @@ const size = (kind: Quantity['kind']) => (description: string, head: string) =>
   v.pipe(v.number(), v.description(description), v.metadata({ kind, head }));
 const quantity = (kind: Quantity['kind']) => (description: string, head: string, second?: string) =>
   v.pipe(v.nullable(v.number()), v.description(description), v.metadata({ kind, head, second }));
-const [drawnMm, length] = [size('drawn_mm'), size('length')];
-const [flow, pressure, shear, time] = [
-  quantity('flow'),
-  quantity('pressure'),
-  quantity('wall_shear'),
-  quantity('residence_time'),
-];
-const [across, velocity] = [quantity('cross_length'), quantity('velocity')];
+const drawnMm = size('drawn_mm');
+const length = size('length');
+const flow = quantity('flow');
+const pressure = quantity('pressure');
+const shear = quantity('wall_shear');
+const time = quantity('residence_time');
+const across = quantity('cross_length');
+const velocity = quantity('velocity');
 const resistance = quantity('resistance')('Pressure drop per flow', 'resistance');
 const floorMean = shear('Wall shear on the floor, mean over its width', 'floor mean');
 const floorPeak = shear('Wall shear on the floor, in its middle', 'floor peak');
