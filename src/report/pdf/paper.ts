@@ -38,7 +38,11 @@ export class Paper {
   /** Next free height on the page, from the top. */
   y = MARGIN;
   private readonly size: readonly [number, number];
-  private readonly embedded: Record<Weight, EmbeddedFont>;
+  /** The fonts, and how they show each character met so far: the search through a font's map takes its time. */
+  private readonly embedded: Record<
+    Weight,
+    { readonly font: EmbeddedFont['font']; readonly shown: Map<string, string> }
+  >;
   private readonly root: Element;
   private readonly chunks: Uint8Array[] = [];
   /** Widths of texts at size 1, by weight. */
@@ -72,9 +76,9 @@ export class Paper {
     // pdfkit's own type wants a Buffer-like source; a Uint8Array is what it reads
     this.doc.registerFont('regular', fonts.regular as PDFKit.Mixins.PDFFontSource);
     this.doc.registerFont('bold', fonts.bold as PDFKit.Mixins.PDFFontSource);
-    const embed = (weight: Weight): EmbeddedFont => {
+    const embed = (weight: Weight) => {
       layOutPlainly(this.doc.font(weight));
-      return embeddedFont(this.doc);
+      return { font: embeddedFont(this.doc).font, shown: new Map<string, string>() };
     };
     this.embedded = { regular: embed('regular'), bold: embed('bold') };
     this.root = this.doc.struct('Document');
@@ -217,13 +221,20 @@ export class Paper {
    */
   readable(text: string, weight: Weight = 'regular'): string {
     let readable = '';
-    for (const character of cleanText(text)) {
-      const codePoint = character.codePointAt(0) ?? 0;
-      readable += this.embedded[weight].font.hasGlyphForCodePoint(codePoint)
-        ? character
-        : `[U+${codePoint.toString(16).toUpperCase().padStart(4, '0')}]`;
-    }
+    for (const character of cleanText(text)) readable += this.shown(character, weight);
     return readable;
+  }
+
+  private shown(character: string, weight: Weight): string {
+    const { font, shown } = this.embedded[weight];
+    let text = shown.get(character);
+    if (text === undefined) {
+      const codePoint = character.codePointAt(0) ?? 0;
+      const code = codePoint.toString(16).toUpperCase().padStart(4, '0');
+      text = font.hasGlyphForCodePoint(codePoint) ? character : `[U+${code}]`;
+      shown.set(character, text);
+    }
+    return text;
   }
 
   /** Readable text cut to a width with an ellipsis. */
