@@ -1,11 +1,11 @@
 import { flowForShear, type ShearAt } from '../physics/duct-state.ts';
-import { formatNumber, type Show, type Unit } from '../runsheet/shown.ts';
+import type { Show, Unit } from '../runsheet/shown.ts';
 import type { PumpLimitEntry, Window } from '../runsheet/types.ts';
 import type { RunNetwork } from '../solve/flow-network.ts';
 import type { FoundTarget } from '../solve/targets.ts';
 import { lineAt, settingsFor } from '../solve/targets-limits.ts';
 import { targetValue } from '../solve/targets-wanted.ts';
-import { niceStep } from './colour-scale.ts';
+import { axisTicks } from './colour-scale.ts';
 
 /** A curve of setting against target as data, in the units shown: target along x, setting along y. */
 export interface PumpCurve {
@@ -107,13 +107,8 @@ function valueCeiling(
 }
 
 function axis(label: string, low: number, high: number, { si }: Unit): CurveAxis {
-  const from = low / si;
-  const to = high / si;
-  const step = niceStep((to - from) / 5);
-  const ticks: { at: number; text: string }[] = [];
-  for (let k = Math.ceil(from / step - 1e-9); k * step <= to + 1e-9 * step; k++)
-    ticks.push({ at: k * step, text: formatNumber(k * step) });
-  return { label, low: from, high: to, ticks };
+  const [from, to] = [low / si, high / si];
+  return { label, low: from, high: to, ticks: axisTicks(from, to) };
 }
 
 /** Pump limits as settings of the port. */

@@ -1,12 +1,12 @@
 import { roomLengthM } from '../network/lengths.ts';
 import { reachName } from '../network/names.ts';
 import { residenceTime, volumeOf } from '../physics/duct-state.ts';
-import { formatNumber, formatShare, type Show, type Shown } from '../runsheet/shown.ts';
-import type { ChannelEntry, Window } from '../runsheet/types.ts';
-import type { RunNetwork } from '../solve/flow-network.ts';
+import { formatShare, type Show } from '../runsheet/shown.ts';
+import type { ChannelEntry } from '../runsheet/types.ts';
 import { reachState } from '../solve/reach-state.ts';
 import type { ReportedCase } from './report.ts';
 import type { ReachRow } from './result-rows.ts';
+import { windowText } from './window-text.ts';
 
 /** What a map can be coloured by. */
 export type MapQuantity = 'shear' | 'pressure' | 'flow' | 'residence';
@@ -99,14 +99,7 @@ export function hasWindow(settings: ChannelEntry | null): boolean {
   );
 }
 
-/** What is asked of the channels that have a window, by their name. */
-export function windowedChannels({ network, run }: RunNetwork): ReadonlyMap<string, ChannelEntry> {
-  const windowed = new Map<string, ChannelEntry>();
-  run.channels.forEach((settings, c) => {
-    if (settings !== null && hasWindow(settings)) windowed.set(network.chip.channels[c].name, settings);
-  });
-  return windowed;
-}
+const STYLE = { digits: 4, most: '≤', least: '≥' } as const;
 
 /** The windows of a channel as text: "shear 0.05 to 0.5 Pa over 80 %". */
 export function windowTexts(settings: ChannelEntry | null, show: Show): readonly string[] {
@@ -116,17 +109,25 @@ export function windowTexts(settings: ChannelEntry | null, show: Show): readonly
   if (wallShear !== null) {
     const over = wallShear.over === null ? '' : ` over ${formatShare(wallShear.over)}`;
     texts.push(
-      `shear ${rangeText('wall_shear', wallShear, show)}${over}${walls === 'all' ? ', all walls' : ''}`,
+      `shear ${windowText(show, 'wall_shear', wallShear, STYLE)}${over}${walls === 'all' ? ', all walls' : ''}`,
     );
   }
-  if (residenceTime !== null) texts.push(`time ${rangeText('residence_time', residenceTime, show)}`);
-  if (flow !== null) texts.push(`flow ${rangeText('flow', flow, show)}`);
+  if (residenceTime !== null) texts.push(`time ${windowText(show, 'residence_time', residenceTime, STYLE)}`);
+  if (flow !== null) texts.push(`flow ${windowText(show, 'flow', flow, STYLE)}`);
   return texts;
 }
 
-function rangeText(shown: Shown, { min, max }: Window, show: Show): string {
-  if (min === null) return `≤ ${show.text(shown, max)}`;
-  if (max === null) return `≥ ${show.text(shown, min)}`;
-  const unit = show.unit(shown, Math.max(Math.abs(min), Math.abs(max)));
-  return `${formatNumber(min / unit.si)} to ${formatNumber(max / unit.si)} ${unit.text}`;
+/** What a table says of a reach's windows: "outside: shear 0.05 to 0.5 Pa"; nothing without a window. */
+export function windowCell(one: ReportedCase): (row: Pick<ReachRow, 'channel' | 'name'>) => string {
+  const { network, run, show } = one;
+  const windowed = new Map<string, ChannelEntry>();
+  run.channels.forEach((settings, c) => {
+    if (settings !== null && hasWindow(settings)) windowed.set(network.chip.channels[c].name, settings);
+  });
+  const outside = outsideWindows(one);
+  return (row) => {
+    const settings = windowed.get(row.channel);
+    if (settings === undefined) return '';
+    return `${outside(row.channel, row.name) ? 'outside: ' : ''}${windowTexts(settings, show).join('; ')}`;
+  };
 }

@@ -14,6 +14,7 @@ import type { FoundSettings } from '../solve/targets.ts';
 import type { FlowState } from '../solve/types.ts';
 import type { Spread } from '../spread/types.ts';
 import { RESULT_VERSION } from '../version.ts';
+import { known } from './known.ts';
 import { pumpPartOf } from './pump-part.ts';
 import type {
   BalanceRow,
@@ -299,12 +300,6 @@ function findingRow(finding: FindingReport['findings'][number]): FindingRow {
         ? null
         : { because: accepted.because, by: accepted.by, on: accepted.on, up_to: accepted.upTo },
   };
-}
-
-/** null for what does not exist (nothing, NaN, or a division by no flow), and no −0. */
-function known(value: number | null | undefined): number | null {
-  if (value === null || value === undefined || !Number.isFinite(value)) return null;
-  return value === 0 ? 0 : value;
 }
 
 /** Reports name files only, so that they are the same wherever the program was started. */

@@ -1,9 +1,9 @@
 import { describe, expect, test } from 'vitest';
 import { writePdf } from '../../src/report/pdf/document.ts';
-import { glyphCoverage } from '../../src/report/pdf/glyph-coverage.ts';
 import type { Report } from '../../src/report/report.ts';
 import { DEMOS, demoReport, reportOf } from './demo.ts';
 import { fonts } from './fonts.ts';
+import { glyphCoverage } from './glyph-coverage.ts';
 import { outside, overlaps, type PdfPage, type PdfText, type ReadPdf, readPdf } from './read-pdf.ts';
 import { sampleCasesReport, sampleReport } from './sample.ts';
 
