@@ -1,12 +1,12 @@
 import { type Analysis, analyse } from './analyse.ts';
+import { refuse } from './chip/complain.ts';
 import { InputError } from './errors.ts';
 import { settleAccepts } from './findings/check.ts';
 import { layOut } from './layout/layout.ts';
 import { buildReport, type Report } from './report/report.ts';
-import { nearest } from './runsheet/nearest.ts';
+import { didYouMean } from './runsheet/nearest.ts';
 import { parseRunSheet } from './runsheet/parse.ts';
 import { quote } from './runsheet/quote.ts';
-import { lineAt } from './runsheet/tree.ts';
 import type { RunSheet } from './runsheet/types.ts';
 import { type Pace, type SpreadOptions, spreadOf, whyNoSpread } from './spread/spread.ts';
 import type { Spread } from './spread/types.ts';
@@ -96,9 +96,9 @@ function casesOf(sheet: RunSheet | null, wanted: string | undefined): readonly S
     const found = cases.find(({ name }) => name === wanted);
     if (found !== undefined) return [found];
     const names = cases.map(({ name }) => name);
-    const near = nearest(wanted, names);
-    const meant = near === null ? 'its cases are' : `did you mean ${quote(near)}? Its cases are`;
-    const hint = names.length === 0 ? 'the run sheet has no cases' : `${meant} ${names.join(', ')}`;
+    const guess = didYouMean(wanted, names);
+    const its = `${guess === null ? 'its' : `${guess} Its`} cases are ${names.join(', ')}`;
+    const hint = names.length === 0 ? 'the run sheet has no cases' : its;
     throw new InputError('--case', `there is no case ${quote(wanted)}; ${hint}`);
   }
   return cases.length === 0 ? [{ name: null, sheet }] : cases;
@@ -118,9 +118,9 @@ async function spreadPart(
   if (asked === undefined || sheet === null || tolerances === null) return {};
   const idle = whyNoSpread(analysis, tolerances);
   if (idle !== null) {
-    const line = lineAt(sheet.tree, ['tolerances']);
-    throw new InputError(
-      line === null ? sheet.file : `${sheet.file}:${line}`,
+    refuse(
+      sheet,
+      ['tolerances'],
       `tolerances: nothing in them moves anything on this chip${inCase(name)}${idle.length === 0 ? '' : ` (${idle.slice(0, 3).join('; ')})`}; ${TOLERANCES_EXAMPLE}`,
     );
   }

@@ -53,17 +53,17 @@ export function assembleChip({ layout, sheet: written, file }: ChipInput): Assem
   const conditions = settingsFinder(sheet, 'ports', sheet?.ports ?? {});
   const drawn = readChannels(strokes, unitMm, finder, file);
   // also of strokes that turn out to be no channel: their keys have matched
-  for (const name of drawn.drawnNames) settings.of(name);
+  for (const name of drawn.names.drawn) settings.of(name);
   const ports = readPorts(holes, unitMm, sheet, limits.portDiameterM.value, file, setAside, conditions);
   const portRuns = ports.ports.map((port) => portRun(port, conditions));
   if (sheet !== null) {
-    sheet = withTargetsNamed(sheet, drawn.drawnNames, ports.drawnNames);
+    sheet = withTargetsNamed(sheet, drawn.names.drawn, ports.names.drawn);
     const names = {
-      channels: drawn.drawnNames,
-      ports: ports.drawnNames,
+      channels: drawn.names.drawn,
+      ports: ports.names.drawn,
       layers: drawnLayers(layout),
       shapes: drawnShapes(layout),
-      isMade: (name: string) => drawn.isMade(name) || ports.isMade(name),
+      isMade: (name: string) => drawn.names.isMade(name) || ports.names.isMade(name),
       setAside,
       undrawn: layout.undrawn,
     };

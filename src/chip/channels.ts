@@ -13,10 +13,8 @@ export interface ChannelReading {
   readonly channels: readonly Channel[];
   readonly sections: readonly DuctForm[];
   readonly faults: readonly ReadingFault[];
-  /** Drawn names of all strokes read, also of those without a width. */
-  readonly drawnNames: ReadonlySet<string>;
-  /** Whether a name was made up for an unnamed or second stroke. */
-  readonly isMade: (name: string) => boolean;
+  /** Of all strokes read, also of those without a width. */
+  readonly names: UniqueNames;
 }
 
 /**
@@ -30,22 +28,19 @@ export function readChannels(
   finder: LayerFinder,
   file: string,
 ): ChannelReading {
-  const drawnNames = new Set<string>();
-  for (const { name } of strokes) if (name !== null) drawnNames.add(name);
-  const names = new UniqueNames(drawnNames);
+  const names = new UniqueNames(strokes);
   const channels: Channel[] = [];
   const sections = new SectionList();
   const faults: ReadingFault[] = [];
-  for (let i = 0; i < strokes.length; i++) {
-    const stroke = strokes[i]!;
-    const name = stroke.name === null ? names.ofUnnamed(`channel-${i + 1}`) : names.ofDrawn(stroke.name);
+  for (const [i, stroke] of strokes.entries()) {
+    const name = names.next(stroke.name, `channel-${i + 1}`);
     if (stroke.width === null || !(stroke.width > 0)) {
       faults.push({ kind: 'unsized-stroke', name, ...startOf(stroke, unitMm) });
       continue;
     }
     const layerIndex = finder.indexOf(stroke.groups);
-    const layer = finder.layers[layerIndex]!;
-    const { depthM, origin } = depthOf(stroke.dataDepth, layer, name, file);
+    const layer = finder.layers[layerIndex];
+    const { depthM, depthOrigin } = depthOf(stroke.dataDepth, layer, name, file);
     if (Number.isNaN(depthM)) {
       faults.push({ kind: 'missing-depth', channel: name, layer: layer.name, ...startOf(stroke, unitMm) });
     }
@@ -66,7 +61,7 @@ export function readChannels(
       ductWidthMm,
       stripHalfWidthMm,
       depthMm,
-      depthOrigin: origin,
+      depthOrigin,
       profile: layer.profile,
       section: sections.indexOf(layer.profile, ductWidthMm, depthMm),
       linecap: stroke.linecap,
@@ -75,7 +70,7 @@ export function readChannels(
       dataChannel: stroke.dataChannel,
     });
   }
-  return { channels, sections: sections.forms, faults, drawnNames, isMade: (name) => names.isMade(name) };
+  return { channels, sections: sections.forms, faults, names };
 }
 
 function startOf(stroke: Stroke, unitMm: number): { readonly xMm: number; readonly yMm: number } {
@@ -113,13 +108,12 @@ function refuseHairline(
   );
 }
 
-interface Widths {
-  readonly ductWidthMm: number;
-  readonly stripHalfWidthMm: number;
-}
-
 /** The strip of a channel of unknown depth is taken as drawn, so that joins can still be found. */
-function widthsOf(drawnWidthMm: number, depthMm: number, profile: Channel['profile']): Widths {
+function widthsOf(
+  drawnWidthMm: number,
+  depthMm: number,
+  profile: Channel['profile'],
+): Pick<Channel, 'ductWidthMm' | 'stripHalfWidthMm'> {
   if (profile === 'rectangle') return { ductWidthMm: drawnWidthMm, stripHalfWidthMm: drawnWidthMm / 2 };
   if (Number.isNaN(depthMm)) return { ductWidthMm: Number.NaN, stripHalfWidthMm: drawnWidthMm / 2 };
   // The section is made of lengths alone, so millimetres serve as well as metres.
@@ -129,15 +123,9 @@ function widthsOf(drawnWidthMm: number, depthMm: number, profile: Channel['profi
 
 function inMm({ points, closed, bendRadius, curves }: Centreline, unitMm: number): Centreline {
   return {
-    points: scaled(points, unitMm),
+    points: points.map((value) => value * unitMm),
     closed,
-    bendRadius: scaled(bendRadius, unitMm),
+    bendRadius: bendRadius.map((value) => value * unitMm),
     curves: scaledCurves(curves, unitMm),
   };
-}
-
-function scaled(values: Float64Array, factor: number): Float64Array {
-  const result = new Float64Array(values.length);
-  for (let i = 0; i < values.length; i++) result[i] = values[i]! * factor;
-  return result;
 }

@@ -2,7 +2,7 @@ import { InputError } from '../errors.ts';
 import type { Curve } from '../geometry/curve.ts';
 import type { Centreline, Hole, Layout, LayoutItem } from '../layout/types.ts';
 import { layerKey } from '../runsheet/names.ts';
-import { nearest } from '../runsheet/nearest.ts';
+import { didYouMean } from '../runsheet/nearest.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { RunSheet } from '../runsheet/types.ts';
 import { refuse } from './complain.ts';
@@ -54,10 +54,8 @@ export function findEdge(layout: Layout, sheet: RunSheet | null, file: string): 
 function whyMissing({ items, undrawn }: Layout, asked: string): string {
   const hidden = undrawn.find(({ name }) => name === asked.trim());
   if (hidden !== undefined) return `${quote(asked)} is in the drawing but is not drawn: ${hidden.why}`;
-  const names = new Set(items.flatMap(({ name }) => name ?? []));
-  const near = nearest(asked, names);
-  const hint = near === null ? '' : `; did you mean ${quote(near)}?`;
-  return `the drawing has no shape ${quote(asked)}${hint}`;
+  const guess = didYouMean(asked, new Set(items.flatMap(({ name }) => name ?? [])));
+  return `the drawing has no shape ${quote(asked)}${guess === null ? '' : `; ${guess}`}`;
 }
 
 function named(items: readonly LayoutItem[], name: string): readonly LayoutItem[] {

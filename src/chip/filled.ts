@@ -10,7 +10,7 @@ import { addDiscStretch, coveredUpTo } from '../geometry/strip.ts';
 import type { Hole, Ignored, Outline } from '../layout/types.ts';
 import { findHairlines } from './hairlines.ts';
 import { circleRing, closedRing, indexRings, outerRings } from './rings.ts';
-import { indexStrips, type StripIndex } from './strip-index.ts';
+import { indexStrips, type StripIndex, widestOf } from './strip-index.ts';
 import type { Channel, Obstacle, OutlineFault, OutlineReason, Port } from './types.ts';
 
 /** Everything drawn that encloses an area and is neither channel nor port. */
@@ -316,24 +316,18 @@ function whereInStrips(
   const { circle, rings } = shape;
   if (circle !== null) {
     const round = strips.channelsRoundDisc(circle.xMm, circle.yMm, circle.radiusMm);
-    if (round.length > 0) return { channel: widestOf(round), inside: true };
+    if (round.length > 0) return { channel: widestOf(channels, round), inside: true };
   }
   const corners = isAllEtched(rings, strips, wells, slackMm) ? cornersIn(rings, strips) : null;
   if (corners !== null && corners.size > 0) {
     const most = Math.max(...corners.values());
     const best = [...corners].filter(([, held]) => held === most).map(([channel]) => channel);
-    return { channel: widestOf(best), inside: true };
+    return { channel: widestOf(channels, best), inside: true };
   }
   const met = new Set(
     rings.flatMap((ring) => sidesOf(ring).flatMap((side) => strips.channelsAlong(...side))),
   );
-  return met.size === 0 ? null : { channel: widestOf([...met]), inside: false };
-
-  function widestOf(candidates: readonly number[]): number {
-    return candidates.reduce((best, one) =>
-      channels[one].stripHalfWidthMm > channels[best].stripHalfWidthMm ? one : best,
-    );
-  }
+  return met.size === 0 ? null : { channel: widestOf(channels, [...met]), inside: false };
 }
 
 /** How many corners of a shape lie in each channel. */

@@ -1,8 +1,9 @@
+import { remembered } from '../by-key.ts';
 import type { Layout } from '../layout/types.ts';
 import { isPattern, layerKey, matches } from '../runsheet/names.ts';
-import { nearest } from '../runsheet/nearest.ts';
+import { didYouMean } from '../runsheet/nearest.ts';
 import { type KeyPath, pathText } from '../runsheet/path-text.ts';
-import { quote } from '../runsheet/quote.ts';
+import { quote, quoteSome } from '../runsheet/quote.ts';
 import type { RunSheet } from '../runsheet/types.ts';
 import type { Undrawn } from '../svg/types.ts';
 import { refuse } from './complain.ts';
@@ -27,23 +28,15 @@ export interface KnownNames {
 /** Every named group of the drawing, by layer key. */
 export function drawnLayers(layout: Layout): ReadonlyMap<string, string> {
   const layers = new Map<string, string>();
-  const seen = new Set<readonly string[]>();
-  for (const { groups } of layout.items) {
-    if (seen.has(groups)) continue;
-    seen.add(groups);
-    for (const name of groups) {
-      const key = layerKey(name);
-      if (!layers.has(key)) layers.set(key, name);
-    }
-  }
+  // siblings share their list of groups
+  for (const groups of new Set(layout.items.map((item) => item.groups)))
+    for (const name of groups) remembered(layers, layerKey(name), () => name);
   return layers;
 }
 
 /** Names of everything that could be a channel, a port or a chamber. */
 export function drawnShapes(layout: Layout): ReadonlySet<string> {
-  const names = new Set<string>();
-  for (const { kind, name } of layout.items) if (kind !== 'ignored' && name !== null) names.add(name);
-  return names;
+  return new Set(layout.items.flatMap(({ kind, name }) => (kind === 'ignored' ? [] : (name ?? []))));
 }
 
 /**
@@ -59,17 +52,19 @@ export function refuseUnknownNames(
     readonly ports: Pick<SettingsFinder<unknown>, 'unmatched' | 'overruled'>;
   },
 ): void {
-  const layerNames = [...names.layers.values()];
-  const layer = (path: KeyPath, name: string): void => {
-    if (!names.layers.has(layerKey(name))) unknown(sheet, path, 'layer', name, layerNames, names);
+  const look = (what: What, path: KeyPath, name: string): void => {
+    const key = what === 'layer' ? layerKey(name) : what === 'shape' ? name.trim() : name;
+    if (!names[`${what}s`].has(key)) unknown(sheet, path, what, name, names);
   };
-  const port = (path: KeyPath, name: string): void => {
-    if (!names.ports.has(name)) unknown(sheet, path, 'port', name, names.ports, names);
+  const lookAtKeys = (what: What, path: KeyPath, section: Readonly<Record<string, unknown>> = {}): void => {
+    for (const name of Object.keys(section)) look(what, [...path, name], name);
   };
-  if (sheet.portsLayer !== null) layer(['ports_layer'], sheet.portsLayer);
-  for (const name of Object.keys(sheet.layers)) layer(['layers', name], name);
-  for (const name of keys.ports.unmatched())
-    unknown(sheet, ['ports', name], 'port', name, names.ports, names);
+  const lookAtList = (what: What, path: KeyPath, list: readonly string[] | null = null): void => {
+    for (const [i, name] of (list ?? []).entries()) look(what, [...path, i], name);
+  };
+  if (sheet.portsLayer !== null) look('layer', ['ports_layer'], sheet.portsLayer);
+  lookAtKeys('layer', ['layers'], sheet.layers);
+  for (const name of keys.ports.unmatched()) unknown(sheet, ['ports', name], 'port', name, names);
   for (const name of keys.ports.overruled()) {
     // In a case the names that it writes may all go before a pattern of the sheet, which then speaks for the other cases.
     if (sheet.changedPorts.some((changed) => changed !== name && matches(name, changed))) continue;
@@ -82,29 +77,22 @@ export function refuseUnknownNames(
   }
   const fields = new Set(sheet.fields.map((name) => name.trim()));
   for (const name of keys.channels.unmatched()) {
-    if (!fields.has(name.trim())) unknown(sheet, ['channels', name], 'channel', name, names.channels, names);
+    if (!fields.has(name.trim())) unknown(sheet, ['channels', name], 'channel', name, names);
   }
   for (const { index, on, name, by } of [...sheet.targets, ...sheet.concentrationTargets]) {
-    if (on === 'port') port(['targets', index, 'port'], name);
-    if (on === 'channel' && !names.channels.has(name))
-      unknown(sheet, ['targets', index, 'channel'], 'channel', name, names.channels, names);
-    port(['targets', index, 'by'], by);
+    if (on !== 'node') look(on, ['targets', index, on], name);
+    look('port', ['targets', index, 'by'], by);
   }
-  for (const [i, name] of sheet.fields.entries()) {
-    if (!names.shapes.has(name.trim())) unknown(sheet, ['fields', i], 'shape', name, names.shapes, names);
-  }
-  for (const [i, name] of sheet.pillars.entries()) layer(['pillars', i], name);
-  for (const [i, name] of (sheet.switch?.from ?? []).entries()) port(['switch', 'from', i], name);
+  lookAtList('shape', ['fields'], sheet.fields);
+  lookAtList('layer', ['pillars'], sheet.pillars);
+  lookAtList('port', ['switch', 'from'], sheet.switch?.from);
   const asked = sheet.switch?.reach ?? null;
   if (asked !== null && !isReachOf(names.channels, asked))
-    unknown(sheet, ['switch', 'reach'], 'channel', asked, names.channels, names);
-  for (const name of Object.keys(sheet.pumpLimits)) port(['pump_limits', name], name);
-  for (const name of Object.keys(sheet.tolerances?.depthByLayer ?? {}))
-    layer(['tolerances', 'depth', name], name);
-  for (const name of Object.keys(sheet.tolerances?.pressureByPort ?? {}))
-    port(['tolerances', 'pressure', name], name);
-  for (const name of Object.keys(sheet.tolerances?.flowByPort ?? {}))
-    port(['tolerances', 'flow', name], name);
+    unknown(sheet, ['switch', 'reach'], 'channel', asked, names);
+  lookAtKeys('port', ['pump_limits'], sheet.pumpLimits);
+  lookAtKeys('layer', ['tolerances', 'depth'], sheet.tolerances?.depthByLayer);
+  lookAtKeys('port', ['tolerances', 'pressure'], sheet.tolerances?.pressureByPort);
+  lookAtKeys('port', ['tolerances', 'flow'], sheet.tolerances?.flowByPort);
   for (const [i, { at }] of sheet.accept.entries()) {
     if (names.isMade(at)) refuse(sheet, ['accept', i, 'at'], `accept[${i}].at: ${madeUp(at)}`);
   }
@@ -117,38 +105,32 @@ function isReachOf(channels: ReadonlySet<string>, asked: string): boolean {
   return isPattern(asked) && [...channels].some((name) => matches(asked, name) || matches(channel, name));
 }
 
-function unknown(
-  sheet: RunSheet,
-  path: KeyPath,
-  what: 'channel' | 'port' | 'layer' | 'shape',
-  name: string,
-  candidates: Iterable<string>,
-  names: KnownNames,
-): never {
+type What = 'channel' | 'port' | 'layer' | 'shape';
+
+function unknown(sheet: RunSheet, path: KeyPath, what: What, name: string, names: KnownNames): never {
   const key = pathText(path);
   if (names.isMade(name)) refuse(sheet, path, `${key}: ${madeUp(name)}`);
   const other = somethingElse(what, name, names);
   if (other !== null) refuse(sheet, path, `${key}: ${other}`);
-  const all = [...candidates];
-  const near = nearest(name.replaceAll('*', ''), all);
-  const fact =
-    isPattern(name) && (what === 'channel' || what === 'port')
-      ? `no ${what} matches ${quote(name)}`
-      : `the drawing has no ${what} ${quote(name)}`;
-  refuse(
-    sheet,
-    path,
-    `${key}: ${fact}; ${near === null ? listed(what, all) : `did you mean ${quote(near)}?`}`,
-  );
+  const all = [...names[`${what}s`].values()];
+  const fact = mayBePattern(what, name)
+    ? `no ${what} matches ${quote(name)}`
+    : `the drawing has no ${what} ${quote(name)}`;
+  const hint = didYouMean(name.replaceAll('*', ''), all) ?? listed(what, all);
+  refuse(sheet, path, `${key}: ${fact}; ${hint}`);
+}
+
+function mayBePattern(what: What, name: string): boolean {
+  return isPattern(name) && (what === 'channel' || what === 'port');
 }
 
 /** What goes by the name (or the first that matches the pattern) though it is no channel, port or layer; null when nothing does. */
 function somethingElse(
-  what: 'channel' | 'port' | 'layer' | 'shape',
+  what: What,
   name: string,
   { channels, ports, layers, setAside, undrawn }: KnownNames,
 ): string | null {
-  const isPatternHere = isPattern(name) && (what === 'channel' || what === 'port');
+  const isPatternHere = mayBePattern(what, name);
   const is =
     what === 'layer'
       ? (other: string): boolean => layerKey(other) === layerKey(name)
@@ -169,13 +151,11 @@ function somethingElse(
   if (hidden !== undefined) return `${whose(hidden.name)} is in the drawing but is not drawn: ${hidden.why}`;
   if (what === 'layer') {
     const shape = [...channels, ...ports, ...setAside.keys()].find(is);
-    if (shape !== undefined) return `${quote(shape)} is a shape; a layer is a group of shapes`;
-    return null;
+    return shape === undefined ? null : `${quote(shape)} is a shape; a layer is a group of shapes`;
   }
-  for (const layer of layers.values()) {
-    if (layer === name) return `${quote(name)} is a group of shapes; a ${what} is one of its shapes`;
-  }
-  return null;
+  return [...layers.values()].includes(name)
+    ? `${quote(name)} is a group of shapes; a ${what} is one of its shapes`
+    : null;
 }
 
 function madeUp(name: string): string {
@@ -183,7 +163,5 @@ function madeUp(name: string): string {
 }
 
 function listed(what: string, names: readonly string[]): string {
-  if (names.length === 0) return `it has no named ${what}s`;
-  const first = names.slice(0, 5).map(quote).join(', ');
-  return `its ${what}s are ${first}${names.length > 5 ? ` and ${names.length - 5} more` : ''}`;
+  return names.length === 0 ? `it has no named ${what}s` : `its ${what}s are ${quoteSome(names, 5)}`;
 }

@@ -1,3 +1,4 @@
+import { remembered } from '../by-key.ts';
 import { InputError } from '../errors.ts';
 import { layerKey } from '../runsheet/names.ts';
 import { quote } from '../runsheet/quote.ts';
@@ -22,31 +23,19 @@ export interface LayerFinder {
  * none (the layer ""). Its depth is the layer's own, else the sheet's, else unknown (NaN).
  */
 export function layerFinder(sheet: RunSheet | null): LayerFinder {
-  const entries = new Map<string, LayerEntry>();
-  for (const [name, entry] of Object.entries(sheet?.layers ?? {})) entries.set(layerKey(name), entry);
+  const entries = new Map(
+    Object.entries(sheet?.layers ?? {}).map(([name, entry]) => [layerKey(name), entry]),
+  );
   const keys = new Map<string, string>();
-  const keyOf = (name: string): string => {
-    const known = keys.get(name);
-    if (known !== undefined) return known;
-    const key = layerKey(name);
-    keys.set(name, key);
-    return key;
-  };
+  const keyOf = (name: string): string => remembered(keys, name, () => layerKey(name));
   // Siblings share their list of groups, so most answers come from the list itself.
   const nameByGroups = new Map<readonly string[], string>();
-  const nameOf = (groups: readonly string[]): string => {
-    const known = nameByGroups.get(groups);
-    if (known !== undefined) return known;
-    let name = groups.at(-1) ?? '';
-    for (let i = groups.length - 1; i >= 0; i--) {
-      if (entries.has(keyOf(groups[i]!))) {
-        name = groups[i]!;
-        break;
-      }
-    }
-    nameByGroups.set(groups, name);
-    return name;
-  };
+  const nameOf = (groups: readonly string[]): string =>
+    remembered(
+      nameByGroups,
+      groups,
+      () => groups.findLast((group) => entries.has(keyOf(group))) ?? groups.at(-1) ?? '',
+    );
 
   const layers: ChipLayer[] = [];
   const planes: string[] = [CHIP_PLANE];
@@ -79,17 +68,17 @@ export function layerFinder(sheet: RunSheet | null): LayerFinder {
   };
 }
 
-export interface Depth {
-  readonly depthM: number;
-  readonly origin: Origin;
-}
-
 /**
  * Depth of a channel: its `data-depth`, else its layer's.
  * @throws InputError when `data-depth` is no depth
  */
-export function depthOf(dataDepth: string | null, layer: ChipLayer, channel: string, file: string): Depth {
-  if (dataDepth === null) return { depthM: layer.depthM, origin: layer.depthOrigin };
+export function depthOf(
+  dataDepth: string | null,
+  { depthM: depthOfLayerM, depthOrigin }: ChipLayer,
+  channel: string,
+  file: string,
+): Pick<ChipLayer, 'depthM' | 'depthOrigin'> {
+  if (dataDepth === null) return { depthM: depthOfLayerM, depthOrigin };
   let depthM: number;
   try {
     depthM = parseQuantity(dataDepth, 'length');
@@ -97,7 +86,7 @@ export function depthOf(dataDepth: string | null, layer: ChipLayer, channel: str
     if (!(error instanceof QuantityError)) throw error;
     throw new InputError(file, `channel ${quote(channel)}: data-depth: ${error.message}`, { cause: error });
   }
-  if (depthM > 0) return { depthM, origin: 'drawing' };
+  if (depthM > 0) return { depthM, depthOrigin: 'drawing' };
   throw new InputError(
     file,
     `channel ${quote(channel)}: data-depth: ${quote(dataDepth)}: a depth must be above 0; write for example "50 um"`,

@@ -9,9 +9,7 @@ export const LIMIT_SLACK = 1e-6;
 export function resolveLeastWall(sheet: RunSheet | null): LeastWall | null {
   const given = sheet?.limits.minWallM ?? null;
   if (given !== null) return { flatM: given, perDepth: 0, origin: 'run sheet' };
-  return sheet?.process == null
-    ? null
-    : { ...USUAL[sheet.process].leastWall, origin: 'typical value, not from your maker' };
+  return sheet?.process == null ? null : { ...USUAL[sheet.process].leastWall, origin: TYPICAL };
 }
 
 /** Thinnest wall (m) beside a channel of a depth (m); of an unknown depth what holds at any. */
@@ -116,9 +114,10 @@ const USUAL: Readonly<Record<ProcessName, Usual>> = {
   },
 };
 
-function choose<T>(given: T | null | undefined, usual: T | null | undefined): Sourced<T> | null {
-  if (given !== null && given !== undefined) return { value: given, origin: 'run sheet' };
-  if (usual !== null && usual !== undefined)
-    return { value: usual, origin: 'typical value, not from your maker' };
-  return null;
+const TYPICAL = 'typical value, not from your maker';
+
+/** What the run sheet gives, else what is usual, else null. */
+export function choose<T>(given: T | null | undefined, usual: T | null | undefined): Sourced<T> | null {
+  if (given != null) return { value: given, origin: 'run sheet' };
+  return usual == null ? null : { value: usual, origin: TYPICAL };
 }

@@ -1,5 +1,5 @@
-import Flatbush from 'flatbush';
 import { InputError } from '../errors.ts';
+import { indexBoxes } from '../geometry/box-index.ts';
 import type { Hole } from '../layout/types.ts';
 import { layerKey } from '../runsheet/names.ts';
 import { quote } from '../runsheet/quote.ts';
@@ -16,8 +16,7 @@ export interface PortReading {
   readonly unsuitable: readonly Hole[];
   /** Circles outside the ports layer. */
   readonly outside: readonly Hole[];
-  readonly drawnNames: ReadonlySet<string>;
-  readonly isMade: (name: string) => boolean;
+  readonly names: UniqueNames;
 }
 
 /**
@@ -61,15 +60,13 @@ export function readPorts(
     }
   }
   const wells = concentric(suitable, unitMm);
-  const drawn = wells.map((circles) => ({ well: circles[0]!, name: nameOf(circles, settings) }));
+  const drawn = wells.map((circles) => ({ well: circles[0], name: nameOf(circles, settings) }));
   drawn.sort((a, b) => a.well.ordinal - b.well.ordinal);
   refuseTwins(drawn, unitMm, file);
-  const drawnNames = new Set<string>();
-  for (const { name } of drawn) if (name !== null) drawnNames.add(name);
-  const names = new UniqueNames(drawnNames);
+  const names = new UniqueNames(drawn);
   const ports = drawn.map(
     ({ well, name }, i): Port => ({
-      name: name === null ? names.ofUnnamed(`port-${i + 1}`) : names.ofDrawn(name),
+      name: names.next(name, `port-${i + 1}`),
       drawnName: name,
       ordinal: well.ordinal,
       xMm: well.x * unitMm,
@@ -77,30 +74,24 @@ export function readPorts(
       radiusMm: well.radius * unitMm,
     }),
   );
-  return { ports, unsuitable, outside, drawnNames, isMade: (name) => names.isMade(name) };
+  return { ports, unsuitable, outside, names };
 }
 
 /** Centres within 1 µm, or within 1 % of the larger radius, are one centre. Each group has its largest circle first. */
 function concentric(holes: readonly Hole[], unitMm: number): readonly (readonly Hole[])[] {
-  if (holes.length === 0) return [];
-  const index = new Flatbush(holes.length);
-  for (const { x, y } of holes) index.add(x, y, x, y);
-  index.finish();
-  const order = holes.map((_, i) => i).sort((a, b) => holes[b]!.radius - holes[a]!.radius || a - b);
+  const index = indexBoxes(holes.flatMap(({ x, y }) => [x, y, x, y]));
+  const bySize = (a: number, b: number): number => holes[b].radius - holes[a].radius || a - b;
   const taken = new Uint8Array(holes.length);
   const groups: Hole[][] = [];
-  for (const largest of order) {
+  for (const largest of [...holes.keys()].sort(bySize)) {
     if (taken[largest]) continue;
-    const { x, y, radius } = holes[largest]!;
+    const { x, y, radius } = holes[largest];
     const reach = Math.max(1e-3 / unitMm, 0.01 * radius) * (1 + 1e-9);
-    const members: number[] = [];
-    for (const i of index.search(x - reach, y - reach, x + reach, y + reach)) {
-      if (taken[i] || Math.hypot(holes[i]!.x - x, holes[i]!.y - y) > reach) continue;
-      taken[i] = 1;
-      members.push(i);
-    }
-    members.sort((a, b) => holes[b]!.radius - holes[a]!.radius || a - b);
-    groups.push(members.map((i) => holes[i]!));
+    const isMember = (i: number): boolean =>
+      taken[i] === 0 && Math.hypot(holes[i].x - x, holes[i].y - y) <= reach;
+    const members = index.search(x - reach, y - reach, x + reach, y + reach, isMember).sort(bySize);
+    for (const i of members) taken[i] = 1;
+    groups.push(members.map((i) => holes[i]));
   }
   return groups;
 }

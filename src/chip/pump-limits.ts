@@ -1,4 +1,5 @@
 import type { PumpLimitEntry } from '../runsheet/types.ts';
+import { choose } from './limits.ts';
 import type { Run, Sourced } from './types.ts';
 
 /** What the pump at one port can do, each limit with where it comes from. */
@@ -17,24 +18,19 @@ const USUAL = { minPressurePa: -80e3, maxPressurePa: 700e3, maxFlowM3s: 10e-6 / 
  */
 export function givenPumpLimits({ sheet }: Pick<Run, 'sheet'>, drawnName: string | null): PumpLimits | null {
   const given = drawnName === null ? undefined : sheet?.pumpLimits[drawnName];
-  if (given === undefined) return null;
-  const sourced = (value: number | null): Sourced<number> | null =>
-    value === null ? null : { value, origin: 'run sheet' };
-  return {
-    minPressurePa: sourced(given.minPressurePa),
-    maxPressurePa: sourced(given.maxPressurePa),
-    maxFlowM3s: sourced(given.maxFlowM3s),
-  };
+  return given === undefined ? null : limitsOf(given, {});
 }
 
 /** What a found setting is held against: what the run sheet gives, else what is usual. */
-export function foundPumpLimits(run: Pick<Run, 'sheet'>, drawnName: string | null): PumpLimits {
-  const given = givenPumpLimits(run, drawnName);
-  const usual = (value: number): Sourced<number> => ({ value, origin: 'typical value, not from your maker' });
+export function foundPumpLimits({ sheet }: Pick<Run, 'sheet'>, drawnName: string | null): PumpLimits {
+  return limitsOf((drawnName === null ? undefined : sheet?.pumpLimits[drawnName]) ?? {}, USUAL);
+}
+
+function limitsOf(given: Partial<PumpLimitEntry>, usual: Partial<typeof USUAL>): PumpLimits {
   return {
-    minPressurePa: given?.minPressurePa ?? usual(USUAL.minPressurePa),
-    maxPressurePa: given?.maxPressurePa ?? usual(USUAL.maxPressurePa),
-    maxFlowM3s: given?.maxFlowM3s ?? usual(USUAL.maxFlowM3s),
+    minPressurePa: choose(given.minPressurePa, usual.minPressurePa),
+    maxPressurePa: choose(given.maxPressurePa, usual.maxPressurePa),
+    maxFlowM3s: choose(given.maxFlowM3s, usual.maxFlowM3s),
   };
 }
 

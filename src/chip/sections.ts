@@ -1,3 +1,4 @@
+import { remembered } from '../by-key.ts';
 import type { DuctForm } from '../physics/duct.ts';
 import { sectionForm } from '../physics/section.ts';
 import type { Channel, Chip } from './types.ts';
@@ -19,12 +20,10 @@ export class SectionList {
   /** Index of a section; −1 where the width or depth is unknown. */
   indexOf(profile: Channel['profile'], ductWidthMm: number, depthMm: number): number {
     if (!(ductWidthMm > 0 && depthMm > 0)) return -1;
-    const key = `${profile} ${ductWidthMm} ${depthMm}`;
-    let index = this.#known.get(key);
-    if (index === undefined) {
-      index = this.forms.push(sectionForm(profile, ductWidthMm / 1000, depthMm / 1000)) - 1;
-      this.#known.set(key, index);
-    }
-    return index;
+    return remembered(
+      this.#known,
+      `${profile} ${ductWidthMm} ${depthMm}`,
+      () => this.forms.push(sectionForm(profile, ductWidthMm / 1000, depthMm / 1000)) - 1,
+    );
   }
 }

@@ -1,3 +1,4 @@
+import { remembered } from '../by-key.ts';
 import { isPattern, matches } from '../runsheet/names.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { RunSheet } from '../runsheet/types.ts';
@@ -52,30 +53,24 @@ export function settingsFinder<T>(
     }
     const first = patterns.findIndex(({ pattern }) => matches(pattern, drawnName));
     if (first < 0) return null;
-    const best = patterns[first]!;
-    for (let i = first + 1; i < patterns.length && patterns[i]!.pattern.length === best.pattern.length; i++) {
-      const rival = patterns[i]!.pattern;
-      if (sheet !== null && matches(rival, drawnName)) {
-        const what = ONE[section];
-        refuse(
-          sheet,
-          [section, rival],
-          `${section}: ${quote(best.pattern)} and ${quote(rival)} both match ${what} ${quote(drawnName)} and are equally long; give the ${what} an entry of its own`,
-        );
-      }
+    const best = patterns[first];
+    const isRival = ({ pattern }: (typeof patterns)[number]): boolean =>
+      pattern.length === best.pattern.length && matches(pattern, drawnName);
+    const rival = patterns.slice(first + 1).find(isRival)?.pattern;
+    if (sheet !== null && rival !== undefined) {
+      const what = ONE[section];
+      refuse(
+        sheet,
+        [section, rival],
+        `${section}: ${quote(best.pattern)} and ${quote(rival)} both match ${what} ${quote(drawnName)} and are equally long; give the ${what} an entry of its own`,
+      );
     }
     ruling.add(best.pattern);
     return best.entry;
   };
   const keys = Object.keys(entries);
   return {
-    of: (drawnName) => {
-      const answer = known.get(drawnName);
-      if (answer !== undefined) return answer;
-      const found = find(drawnName);
-      known.set(drawnName, found);
-      return found;
-    },
+    of: (drawnName) => remembered(known, drawnName, () => find(drawnName)),
     isNamed: (drawnName) => exact.has(drawnName),
     isMatched: (drawnName) => patterns.some(({ pattern }) => matches(pattern, drawnName)),
     unmatched: () => keys.filter((key) => waitingPatterns.has(key) || waitingNames.has(key.trim())),

@@ -17,6 +17,13 @@ export interface StripIndex {
   readonly channelsAlong: (x1Mm: number, y1Mm: number, x2Mm: number, y2Mm: number) => readonly number[];
 }
 
+/** The widest of some channels (indices), the first of several as wide. */
+export function widestOf(channels: readonly Channel[], some: readonly number[]): number {
+  return some.reduce((best, one) =>
+    channels[one].stripHalfWidthMm > channels[best].stripHalfWidthMm ? one : best,
+  );
+}
+
 /** One index over all straight pieces; each question costs about the logarithm of their number. */
 export function indexStrips(channels: readonly Channel[], slackMm: number): StripIndex {
   const pieces = toPieces(channels);

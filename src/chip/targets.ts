@@ -1,6 +1,6 @@
 import { isPattern, matches } from '../runsheet/names.ts';
 import { pathText } from '../runsheet/path-text.ts';
-import { quote } from '../runsheet/quote.ts';
+import { quote, quoteSome } from '../runsheet/quote.ts';
 import type { RunSheet } from '../runsheet/types.ts';
 import { refuse } from './complain.ts';
 
@@ -21,7 +21,7 @@ export function withTargetsNamed(
     if (known.has(name)) return target;
     const found = [...known].filter((candidate) => matches(name, candidate));
     if (found.length > 1) refuseSeveral(sheet, ['targets', index, on], name, on, found);
-    return found.length === 1 ? { ...target, name: found[0]! } : target;
+    return found.length === 1 ? { ...target, name: found[0] } : target;
   };
   return {
     ...sheet,
@@ -38,13 +38,9 @@ export function refuseSeveral(
   what: string,
   found: readonly string[],
 ): never {
-  const more = found.length - MOST_LISTED;
-  const list = `${found.slice(0, MOST_LISTED).map(quote).join(', ')}${more > 0 ? ` and ${more} more` : ''}`;
   return refuse(
     sheet,
     path,
-    `${pathText(path)}: ${quote(pattern)} matches ${found.length} ${what}s, ${list}; a target is on one: name it in full`,
+    `${pathText(path)}: ${quote(pattern)} matches ${found.length} ${what}s, ${quoteSome(found, 5)}; a target is on one: name it in full`,
   );
 }
-
-const MOST_LISTED = 5;

@@ -6,9 +6,12 @@ export class UniqueNames {
   readonly #state = new Map<string, 'drawn' | 'shown' | 'made'>();
   readonly #next = new Map<string, number>();
 
-  /** @param drawn every name of the drawing that may be shown */
-  constructor(drawn: Iterable<string>) {
-    for (const name of drawn) this.#state.set(name, 'drawn');
+  /** Every name of the drawing that may be shown. */
+  readonly drawn: ReadonlySet<string>;
+
+  constructor(things: readonly { readonly name: string | null }[]) {
+    this.drawn = new Set(things.flatMap(({ name }) => name ?? []));
+    for (const name of this.drawn) this.#state.set(name, 'drawn');
   }
 
   /** Whether a name is shown that the drawing does not have: it means nothing in a run sheet. */
@@ -16,17 +19,12 @@ export class UniqueNames {
     return this.#state.get(name) === 'made';
   }
 
-  /** `lane`, then `lane-2`, `lane-3` … */
-  ofDrawn(name: string): string {
-    if (this.#state.get(name) !== 'drawn') return this.#numbered(name);
-    this.#state.set(name, 'shown');
-    return name;
-  }
-
-  /** The made-up name itself unless the drawing uses it. */
-  ofUnnamed(name: string): string {
-    if (this.#state.has(name)) return this.#numbered(name);
-    this.#state.set(name, 'made');
+  /** `lane`, then `lane-2`, `lane-3` …; of an unnamed thing the made-up name, unless the drawing uses it. */
+  next(drawnName: string | null, madeUp: string): string {
+    const name = drawnName ?? madeUp;
+    const state = this.#state.get(name);
+    if (state !== (drawnName === null ? undefined : 'drawn')) return this.#numbered(name);
+    this.#state.set(name, drawnName === null ? 'made' : 'shown');
     return name;
   }
 

@@ -5,7 +5,7 @@
 import * as v from 'valibot';
 import { withoutEscapes } from '../escaped-names.ts';
 import { recordOf } from './names.ts';
-import { nearest } from './nearest.ts';
+import { didYouMean } from './nearest.ts';
 import { hint, quote } from './quote.ts';
 import { describeQuantity, parseQuantity, type Quantity, QuantityError } from './units.ts';
 
@@ -42,26 +42,26 @@ export function quantity(
   );
 }
 
-/** A text that must not be empty: a title. Editors may read `007` as a number, so the JSON Schema allows one. */
-export function text(description: string, example: string): Field<string> {
-  return scalar(example, { description, examples: [example], type: ['string', 'number'] }, (written) =>
-    checkedText(written, example),
-  );
+/**
+ * A text that must not be empty: a title. Editors may read `007` as a number, so the JSON Schema allows one.
+ * @param read what is made of it first
+ */
+export function text(
+  description: string,
+  example: string,
+  read: (written: string) => string = String,
+): Field<string> {
+  return scalar(example, { description, examples: [example], type: ['string', 'number'] }, (written) => {
+    const shown = read(written);
+    if (shown.trim() === '') throw new QuantityError(`is empty; ${hint(example)}`);
+    if (shown.length <= MAX_TEXT) return shown;
+    throw new QuantityError(`has ${shown.length} characters, over ${MAX_TEXT} (the limit); shorten it`);
+  });
 }
 
 /** A name of the drawing, or a pattern of such names: an editor's escapes are read in it. */
 export function drawnName(description: string, example: string): Field<string> {
-  return scalar(example, { description, examples: [example], type: ['string', 'number'] }, (written) =>
-    checkedText(withoutEscapes(written), example),
-  );
-}
-
-function checkedText(written: string, example: string): string {
-  if (written.trim() === '') throw new QuantityError(`is empty; ${hint(example)}`);
-  if (written.length > MAX_TEXT) {
-    throw new QuantityError(`has ${written.length} characters, over ${MAX_TEXT} (the limit); shorten it`);
-  }
-  return written;
+  return text(description, example, withoutEscapes);
 }
 
 /** Longest text in characters: it is printed on paper. */
@@ -72,9 +72,10 @@ export function word<const T extends string>(options: readonly T[], description:
   return scalar(options[0], { description, enum: options }, (written) => {
     const found = options.find((option) => option === written.trim());
     if (found !== undefined) return found;
-    const near = nearest(written, options);
-    const guess = near === null ? '' : `; did you mean ${quote(near)}?`;
-    throw new QuantityError(`${quote(written)} is not one of ${options.join(', ')}${guess}`);
+    const guess = didYouMean(written, options);
+    throw new QuantityError(
+      `${quote(written)} is not one of ${options.join(', ')}${guess === null ? '' : `; ${guess}`}`,
+    );
   });
 }
 
@@ -136,9 +137,7 @@ export function keys<Keys extends Readonly<Record<string, Field<unknown> | Key<u
     if (issue.expected !== 'never')
       return `needs the key ${issue.expected.replaceAll('"', '')}; ${hint(example)}`;
     const names = Object.keys(given);
-    const near = nearest(String(key), names);
-    if (near !== null) return `unknown key; did you mean ${quote(near)}?`;
-    return `unknown key; known here: ${names.join(', ')}`;
+    return `unknown key; ${didYouMean(String(key), names) ?? `known here: ${names.join(', ')}`}`;
   });
   const values = reading<Readonly<Record<string, unknown>>, ValuesOf<Keys>>(
     (read) =>

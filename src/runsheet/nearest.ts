@@ -1,4 +1,5 @@
 import { distance } from 'fastest-levenshtein';
+import { quote } from './quote.ts';
 
 /**
  * The candidate that `word` was most likely meant to be, or null when none is near.
@@ -19,6 +20,12 @@ export function nearest(word: string, candidates: Iterable<string>): string | nu
     }
   }
   return best;
+}
+
+/** The hint at a near miss, `did you mean "lanes"?`; null when none is near. */
+export function didYouMean(word: string, candidates: Iterable<string>): string | null {
+  const near = nearest(word, candidates);
+  return near === null ? null : `did you mean ${quote(near)}?`;
 }
 
 function plain(word: string): string {

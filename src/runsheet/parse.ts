@@ -3,7 +3,7 @@ import { InputError } from '../errors.ts';
 import { withDecodedNames } from './decoded-names.ts';
 import { keepPorts, mergeCase, portsOf } from './merge.ts';
 import { isPattern, layerKey, matches, recordOf } from './names.ts';
-import { nearest } from './nearest.ts';
+import { didYouMean } from './nearest.ts';
 import { type KeyPath, pathText } from './path-text.ts';
 import { quote } from './quote.ts';
 import { caseSchema, SHEET_KEYS, type SheetValues, sheetSchema } from './schema.ts';
@@ -116,8 +116,7 @@ function validate<T>(schema: v.GenericSchema<unknown, T>, root: MapNode, file: s
 }
 
 function faultOf(issue: v.BaseIssue<unknown>, root: MapNode): Fault {
-  const path: (string | number)[] = [];
-  for (const { key } of issue.path ?? []) path.push(typeof key === 'number' ? key : String(key));
+  const path = (issue.path ?? []).map(({ key }) => (typeof key === 'number' ? key : String(key)));
   let known: KeyPath = path;
   let line = lineAt(root, known);
   while (line === null && known.length > 0) {
@@ -203,13 +202,10 @@ function refuseUndeclaredSolutes(values: SheetValues, refuse: Refuse): void {
   const look = (path: KeyPath, names: Iterable<string>): void => {
     for (const name of names) {
       if (known.has(name)) continue;
-      const near = nearest(name, declared);
       const hint =
         declared.length === 0
           ? `write for example solutes: { ${name}: { diffusion: 5e-10 m^2/s, unit: uM } }`
-          : near === null
-            ? `known here: ${declared.slice(0, 5).map(quote).join(', ')}`
-            : `did you mean ${quote(near)}?`;
+          : (didYouMean(name, declared) ?? `known here: ${declared.slice(0, 5).map(quote).join(', ')}`);
       refuse([...path, name], `${quote(name)} is not among the solutes; ${hint}`);
     }
   };

@@ -14,6 +14,12 @@ function escaped(character: string): string {
   return `\\u${character.charCodeAt(0).toString(16).padStart(4, '0')}`;
 }
 
+/** The first of several names, quoted: `"a", "b" and 3 more`. */
+export function quoteSome(names: readonly string[], most: number): string {
+  const more = names.length - most;
+  return `${names.slice(0, most).map(quote).join(', ')}${more > 0 ? ` and ${more} more` : ''}`;
+}
+
 /** The end of a message: what would have been right. */
 export function hint(example: string): string {
   return `write for example ${/^[{[]/.test(example) ? example : `"${example}"`}`;

@@ -27,7 +27,7 @@ import {
   word,
 } from './fields.ts';
 import { RULE_MEASURES, UNACCEPTABLE_RULES } from './measures.ts';
-import { nearest } from './nearest.ts';
+import { didYouMean } from './nearest.ts';
 import { hint, quote } from './quote.ts';
 import { describeQuantity, parseQuantity, type Quantity, QuantityError, unitFactor } from './units.ts';
 
@@ -563,9 +563,9 @@ const ruleName = scalar(
         `${quote(name)} can't be accepted: the numbers themselves would be wrong; mend the drawing or the run sheet`,
       );
     }
-    const near = nearest(name, RULE_MEASURES.keys());
+    const guess = didYouMean(name, RULE_MEASURES.keys());
     throw new QuantityError(
-      `${quote(name)} is not a rule that can be accepted${near === null ? '' : `; did you mean ${quote(near)}?`}`,
+      `${quote(name)} is not a rule that can be accepted${guess === null ? '' : `; ${guess}`}`,
     );
   },
 );

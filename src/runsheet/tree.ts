@@ -64,21 +64,27 @@ export function parseTree(text: string, file: string): MapNode {
     );
   }
   const lines = new LineCounter();
-  const document = compose(text, file, lines);
-  const at = (offset: number): number => Math.max(1, lines.linePos(offset).line);
-  refuseErrors(document, text, file, at);
+  const source: Source = {
+    lineOf: (offset) => Math.max(1, lines.linePos(offset).line),
+    fault: (line, what, options) => new InputError(`${file}:${line}`, what, options),
+  };
+  const document = compose(text, lines, source);
+  if (document === null) throw new InputError(file, 'could not be read as YAML');
+  refuseErrors(document, text, source);
   const { contents } = document;
   if (contents === null || (isScalar(contents) && contents.source === '' && contents.type === 'PLAIN')) {
     return { kind: 'map', entries: new Map(), line: 1 };
   }
-  const root = toTree(contents, file, at, null, []);
-  if (root.kind !== 'map') {
-    throw new InputError(
-      `${file}:${root.line}`,
-      'is not a run sheet; write keys with values, for example "depth: 50 um"',
-    );
-  }
-  return root;
+  const root = toTree(contents, source, null, []);
+  if (root.kind === 'map') return root;
+  throw source.fault(root.line, 'is not a run sheet; write keys with values, for example "depth: 50 um"');
+}
+
+interface Source {
+  /** Line of a place in the text, 1-based. */
+  readonly lineOf: (offset: number) => number;
+  /** What is wrong in a line, to be thrown. */
+  readonly fault: (line: number, what: string, options?: { readonly cause: unknown }) => InputError;
 }
 
 /** The tree as plain data for a schema: strings, arrays and objects without a prototype. */
@@ -143,16 +149,15 @@ const DEEPEST = 32;
  * The composer of `yaml` recurses, and V8 aborts the process when a regular expression is first compiled on a stack
  * that is nearly full; so the parser, which keeps a stack of its own, is stopped before it is deep.
  */
-function compose(text: string, file: string, lines: LineCounter): Document.Parsed {
+function compose(text: string, lines: LineCounter, { lineOf, fault }: Source): Document.Parsed | null {
   const parser = new Parser(lines.addNewLine);
   const tokens: CST.Token[] = [];
   lines.addNewLine(0);
   for (const lexeme of new Lexer().lex(text)) {
     for (const token of parser.next(lexeme)) tokens.push(token);
     if (parser.stack.length > DEEPEST) {
-      const { line } = lines.linePos(parser.offset);
-      throw new InputError(
-        `${file}:${Math.max(1, line)}`,
+      throw fault(
+        lineOf(parser.offset),
         `is nested deeper than the limit "run sheet depth" of ${DEEPEST} levels; a run sheet needs six`,
       );
     }
@@ -161,36 +166,27 @@ function compose(text: string, file: string, lines: LineCounter): Document.Parse
   const options = { schema: 'failsafe', uniqueKeys: false, prettyErrors: false, logLevel: 'silent' } as const;
   let first: Document.Parsed | null = null;
   for (const document of new Composer(options).compose(tokens, true, text.length)) {
-    if (first === null) {
-      first = document;
-    } else {
-      const where = `${file}:${lines.linePos(document.range[0]).line}`;
-      throw new InputError(
-        where,
-        'starts a second document; a run sheet is one, so leave out the line "---"',
-      );
+    if (first !== null) {
+      const line = lineOf(document.range[0]);
+      throw fault(line, 'starts a second document; a run sheet is one, so leave out the line "---"');
     }
+    first = document;
   }
-  if (first === null) throw new InputError(file, 'could not be read as YAML');
   return first;
 }
 
-type LineAt = (offset: number) => number;
-
-function refuseErrors(document: Document.Parsed, text: string, file: string, at: LineAt): void {
+function refuseErrors(document: Document.Parsed, text: string, { lineOf, fault }: Source): void {
   const first = [...document.errors].sort((a, b) => a.pos[0] - b.pos[0])[0];
   if (first !== undefined) {
-    const line = at(first.pos[0]);
+    const line = lineOf(first.pos[0]);
     const source = text.split('\n', line)[line - 1] ?? '';
-    const sameLine = document.errors.filter((error) => at(error.pos[0]) === line);
-    throw new InputError(`${file}:${line}`, sayError(first, sameLine, source), { cause: first });
+    const sameLine = document.errors.filter((error) => lineOf(error.pos[0]) === line);
+    throw fault(line, sayError(first, sameLine, source), { cause: first });
   }
   const tag = document.warnings.find((warning) => warning.code === 'TAG_RESOLVE_FAILED');
   if (tag !== undefined) {
-    throw new InputError(
-      `${file}:${at(tag.pos[0])}`,
-      'has a YAML tag; leave out the word that starts with "!", or quote it',
-    );
+    const line = lineOf(tag.pos[0]);
+    throw fault(line, 'has a YAML tag; leave out the word that starts with "!", or quote it');
   }
 }
 
@@ -227,19 +223,14 @@ function lowerFirst(message: string): string {
   return message.charAt(0).toLowerCase() + message.slice(1);
 }
 
-function toTree(
-  node: ParsedNode | null,
-  file: string,
-  at: LineAt,
-  keyLine: number | null,
-  path: KeyPath,
-): TreeNode {
+function toTree(node: ParsedNode | null, source: Source, keyLine: number | null, path: KeyPath): TreeNode {
   if (node === null) return { kind: 'text', text: '', line: keyLine ?? 1, empty: true };
-  const line = at(node.range[0]);
-  if (isAlias(node)) throw new InputError(`${file}:${line}`, starMessage(`*${node.source}`));
+  const { fault } = source;
+  const line = source.lineOf(node.range[0]);
+  if (isAlias(node)) throw fault(line, starMessage(`*${node.source}`));
   if (node.anchor !== undefined) {
-    throw new InputError(
-      `${file}:${line}`,
+    throw fault(
+      line,
       'has a YAML anchor (&); run sheets have none, so write the value out or quote the text',
     );
   }
@@ -253,26 +244,26 @@ function toTree(
     };
   }
   if (isSeq(node)) {
-    const items = node.items.map((item, i) => toTree(item, file, at, line, [...path, i]));
+    const items = node.items.map((item, i) => toTree(item, source, line, [...path, i]));
     return { kind: 'list', items, line };
   }
   if (isMap(node)) {
     const entries = new Map<string, MapEntry>();
     let previous: string | null = null;
     for (const { key, value } of node.items) {
-      const read = keyOf(key, file, at, line);
+      const read = keyOf(key, source, line);
       if (value === null && previous !== null)
-        refuseComma(entries.get(previous), read, [...path, previous], file);
+        refuseComma(entries.get(previous), read, [...path, previous], source);
       previous = read.text;
       const earlier = entries.get(read.text);
       if (earlier !== undefined) {
-        throw new InputError(
-          `${file}:${read.line}`,
+        throw fault(
+          read.line,
           `key ${quote(read.text)} is there twice (first in line ${earlier.line}); keep one of them`,
         );
       }
       entries.set(read.text, {
-        node: toTree(value, file, at, read.line, [...path, read.text]),
+        node: toTree(value, source, read.line, [...path, read.text]),
         line: read.line,
       });
     }
@@ -281,40 +272,30 @@ function toTree(
   return node satisfies never;
 }
 
-function keyOf(
-  key: ParsedNode | null,
-  file: string,
-  at: LineAt,
-  mapLine: number,
-): { text: string; line: number } {
-  if (key === null) throw new InputError(`${file}:${mapLine}`, 'has a value without a key before its ":"');
-  const line = at(key.range[0]);
-  if (isAlias(key)) throw new InputError(`${file}:${line}`, starMessage(`*${key.source.replace(/:$/, '')}`));
-  if (!isScalar(key) || key.anchor !== undefined) {
-    throw new InputError(`${file}:${line}`, 'has a key that is not plain text; quote the key');
-  }
+interface Key {
+  readonly text: string;
+  readonly line: number;
+}
+
+function keyOf(key: ParsedNode | null, { lineOf, fault }: Source, mapLine: number): Key {
+  if (key === null) throw fault(mapLine, 'has a value without a key before its ":"');
+  const line = lineOf(key.range[0]);
+  if (isAlias(key)) throw fault(line, starMessage(`*${key.source.replace(/:$/, '')}`));
+  if (!isScalar(key) || key.anchor !== undefined)
+    throw fault(line, 'has a key that is not plain text; quote the key');
   const text = String(key.value ?? '');
-  if (text === '') throw new InputError(`${file}:${line}`, 'has an empty key; give it a name');
-  if (UNUSABLE_KEYS.has(text)) {
-    throw new InputError(
-      `${file}:${line}`,
-      `${quote(text)} can't be a name in a run sheet; give it another name in the drawing`,
-    );
-  }
+  if (text === '') throw fault(line, 'has an empty key; give it a name');
+  if (UNUSABLE_KEYS.has(text))
+    throw fault(line, `${quote(text)} can't be a name in a run sheet; give it another name in the drawing`);
   return { text, line };
 }
 
 /** In braces, `{ depth: 50,5 um }` is the value 50 and then a key `5 um` without a value. */
-function refuseComma(
-  before: MapEntry | undefined,
-  key: { readonly text: string; readonly line: number },
-  path: KeyPath,
-  file: string,
-): void {
+function refuseComma(before: MapEntry | undefined, key: Key, path: KeyPath, { fault }: Source): void {
   if (before?.node.kind !== 'text' || !/^[+-]?\d+$/.test(before.node.text) || !/^\d/.test(key.text)) return;
   const [whole, rest] = [before.node.text, key.text];
-  throw new InputError(
-    `${file}:${key.line}`,
+  throw fault(
+    key.line,
     `${pathText(path)}: ${quote(`${whole},${rest}`)} has a comma; decimals take a point; write for example ${quote(`${whole}.${rest}`)}`,
   );
 }

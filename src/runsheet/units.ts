@@ -6,7 +6,7 @@
  * g = 9.80665 m/s², lb = 0.45359237 kg, in = 0.0254 m, atm = 101325 Pa (NIST SP 811, appendix B.8).
  */
 import { createUnitClass, type Unit as MathUnit, type UnitCtor } from 'mathjs';
-import { nearest } from './nearest.ts';
+import { didYouMean } from './nearest.ts';
 import { hint, quote } from './quote.ts';
 
 /** Text that is not the quantity asked for. The message says what is wrong and gives a right example; the caller adds where. */
@@ -34,14 +34,7 @@ export function parseQuantity(text: string, quantity: Quantity, exampleUnit?: st
     return value;
   }
   if (unitText === '') throw new QuantityError(`${quote(text)} has no unit; ${example}`);
-  const scale = scaleOf(unitText);
-  if (scale === null) {
-    const near = nearest(unitText, kind.spellings);
-    const guess = near === null || near === unitText ? '' : ` (did you mean ${quote(near)}?)`;
-    throw new QuantityError(
-      `${quote(text)}: ${quote(unitText)} is not a unit known here${guess}; ${example}`,
-    );
-  }
+  const scale = knownScale(unitText, kind, `${quote(text)}: `, example);
   if (scale.dimension !== kind.dimension) {
     throw new QuantityError(
       `${quote(text)} is ${nameOf(scale.dimension)}; ${kind.word} is needed; ${example}`,
@@ -71,12 +64,7 @@ function refuseBeyond(text: string, si: number, quantity: Quantity, usual: strin
 export function unitFactor(unitText: string, quantity: Quantity): number {
   const kind = KINDS[quantity];
   const example = hint(kind.exampleUnit);
-  const scale = scaleOf(unitText);
-  if (scale === null) {
-    const near = nearest(unitText, kind.spellings);
-    const guess = near === null ? '' : ` (did you mean ${quote(near)}?)`;
-    throw new QuantityError(`${quote(unitText)} is not a unit known here${guess}; ${example}`);
-  }
+  const scale = knownScale(unitText, kind, '', example);
   if (scale.dimension !== kind.dimension) {
     throw new QuantityError(
       `${quote(unitText)} is a unit of ${nameOf(scale.dimension).replace(/^an? /, '')}; one of ${kind.word.replace(/^an? /, '')} is needed; ${example}`,
@@ -326,6 +314,14 @@ function splitNumber(
     throw new QuantityError(`${quote(text)} is too small to hold; ${usual}`);
   }
   return { value: value + 0, numberText, unitText };
+}
+
+function knownScale(unitText: string, { spellings }: Kind, before: string, example: string): Scale {
+  const scale = scaleOf(unitText);
+  if (scale !== null) return scale;
+  const guess = didYouMean(unitText, spellings);
+  const meant = guess === null ? '' : ` (${guess})`;
+  throw new QuantityError(`${before}${quote(unitText)} is not a unit known here${meant}; ${example}`);
 }
 
 const scales = new Map<string, Scale | null>();

@@ -1,8 +1,8 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { layerKey, matches } from '../../src/runsheet/names.ts';
-import { nearest } from '../../src/runsheet/nearest.ts';
-import { quote } from '../../src/runsheet/quote.ts';
+import { didYouMean, nearest } from '../../src/runsheet/nearest.ts';
+import { quote, quoteSome } from '../../src/runsheet/quote.ts';
 
 describe('matches', () => {
   it('lets * stand for any run of characters, also none', () => {
@@ -46,6 +46,16 @@ describe('nearest', () => {
     expect(nearest('temperature', ['flow', 'depth'])).toBeNull();
     expect(nearest('x', [])).toBeNull();
   });
+});
+
+it('a near miss is asked for by name, and nothing where none is near', () => {
+  expect(didYouMean('LANE', ['waste', 'lane'])).toBe('did you mean "lane"?');
+  expect(didYouMean('temperature', ['flow', 'depth'])).toBeNull();
+});
+
+it('of many names the first are told, and how many more there are', () => {
+  expect(quoteSome(['a', 'b', 'c'], 3)).toBe('"a", "b", "c"');
+  expect(quoteSome(['a', 'b', 'c', 'd'], 2)).toBe('"a", "b" and 2 more');
 });
 
 describe('quote', () => {
