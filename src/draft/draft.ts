@@ -1,3 +1,4 @@
+import { grouped } from '../by-key.ts';
 import { assembleChip } from '../chip/assemble.ts';
 import { DEFAULT_MAX_REYNOLDS } from '../chip/defaults.ts';
 import { sizesByPixel } from '../chip/pixel-sizes.ts';
@@ -89,7 +90,7 @@ function head(drawn: Drawn, layout: Layout, tool: string): string[] {
     sides,
     edge === null
       ? 'outline: # fill in: name of the shape that is the chip edge; without one the edge rules are not run'
-      : `# outline: ${edgeName(edge.name)} # the chip edge found; when given here, only what lies inside it is read`,
+      : `# outline: ${isDraftable(edge.name) ? keyText(edge.name) : '…'} # the chip edge found; when given here, only what lies inside it is read`,
     portsLayerLine(drawn),
     '# ignore: ["dim-*"] # names of elements or layers that are not read; * matches any run of characters',
     '# join_within: 1 um # slack of every "on" and "inside" when channels are joined',
@@ -100,10 +101,6 @@ function head(drawn: Drawn, layout: Layout, tool: string): string[] {
     'temperature: 25 degC # of the chip; fill in: the one it is run at',
     '',
   ];
-}
-
-function edgeName(name: string): string {
-  return isDraftable(name) ? keyText(name) : '…';
 }
 
 function portsLayerLine({ groupsOf, fields, pillars, ports }: Drawn): string {
@@ -226,13 +223,10 @@ const WINDOW_EXAMPLE = [
 ];
 
 function channelLines({ chip, groupsOf }: Drawn): string[] {
-  const named = new Map<string, Channel[]>();
-  let unnamed = 0;
-  for (const channel of chip.channels) {
-    if (channel.drawnName === null) unnamed++;
-    else named.set(channel.drawnName, [...(named.get(channel.drawnName) ?? []), channel]);
-  }
-  const lines = [...named].map(([name, channels]) => {
+  const byName = grouped(chip.channels, ({ drawnName }) => drawnName);
+  const unnamed = byName.get(null)?.length ?? 0;
+  const lines = [...byName].flatMap(([name, channels]) => {
+    if (name === null) return [];
     const widths = [...new Set(channels.map(({ drawnWidthMm }) => formatMm(drawnWidthMm)))];
     const layers = [...new Set(channels.flatMap(({ ordinal }) => groupsOf(ordinal)[0] ?? []))];
     const about = [

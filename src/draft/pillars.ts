@@ -1,6 +1,7 @@
-import Flatbush from 'flatbush';
-import { indexStrips } from '../chip/strip-index.ts';
+import { grouped } from '../by-key.ts';
+import { indexStrips, widestOf } from '../chip/strip-index.ts';
 import type { Channel, Chip, Port } from '../chip/types.ts';
+import { indexBoxes } from '../geometry/box-index.ts';
 
 /** Circles of port size that look like pillars in a channel. */
 export interface PillarField {
@@ -20,36 +21,30 @@ export function pillarFields(chip: Chip): readonly PillarField[] {
   if (channels.length === 0 || ports.length < FEWEST + 2) return [];
   const strips = indexStrips(channels, joinWithinMm);
   const holdsEnd = endFinder(channels);
-  const groups = new Map<string, { channel: Channel; pillars: Port[] }>();
-  for (const port of ports) {
-    const { xMm, yMm, radiusMm } = port;
-    const round = strips.channelsRoundDisc(xMm, yMm, radiusMm);
-    if (round.length === 0 || holdsEnd(port)) continue;
-    const widest = round.reduce((best, one) =>
-      channels[one].stripHalfWidthMm > channels[best].stripHalfWidthMm ? one : best,
-    );
-    const key = `${widest} ${Math.round(Math.log(radiusMm) / 0.01)}`;
-    const group = groups.get(key);
-    if (group === undefined) groups.set(key, { channel: channels[widest], pillars: [port] });
-    else group.pillars.push(port);
-  }
-  const fields = [...groups.values()].filter(({ pillars }) => pillars.length >= FEWEST);
+  const inChannel = ports.flatMap((port) => {
+    const round = strips.channelsRoundDisc(port.xMm, port.yMm, port.radiusMm);
+    return round.length === 0 || holdsEnd(port) ? [] : [{ port, widest: widestOf(channels, round) }];
+  });
+  const groups = grouped(
+    inChannel,
+    ({ port, widest }) => `${widest} ${Math.round(Math.log(port.radiusMm) / 0.01)}`,
+  );
+  const fields = [...groups.values()]
+    .filter(({ length }) => length >= FEWEST)
+    .map((group) => ({
+      channel: channels[group[0].widest],
+      pillars: group.map(({ port }) => port),
+    }));
   const count = fields.reduce((sum, { pillars }) => sum + pillars.length, 0);
   return ports.length - count < 2 ? [] : fields;
 }
 
 /** Whether a channel ends within a circle. */
 function endFinder(channels: readonly Channel[]): (port: Port) => boolean {
-  const ends: [number, number][] = [];
-  for (const { centrelines } of channels) {
-    for (const { points, closed } of centrelines) {
-      if (!closed) ends.push([points[0], points[1]], [points[points.length - 2], points[points.length - 1]]);
-    }
-  }
-  if (ends.length === 0) return () => false;
-  const index = new Flatbush(ends.length);
-  for (const [x, y] of ends) index.add(x, y, x, y);
-  index.finish();
+  const ends = channels
+    .flatMap(({ centrelines }) => centrelines)
+    .flatMap(({ points, closed }) => (closed ? [] : [points.subarray(0, 2), points.subarray(-2)]));
+  const index = indexBoxes(ends.flatMap(([x, y]) => [x, y, x, y]));
   return ({ xMm, yMm, radiusMm: r }) =>
     index
       .search(xMm - r, yMm - r, xMm + r, yMm + r)

@@ -1,3 +1,4 @@
+import { remembered } from '../by-key.ts';
 import type { Chip } from '../chip/types.ts';
 import { findNearPairs } from '../geometry/near.ts';
 import { toPieces } from '../geometry/pieces.ts';
@@ -55,10 +56,7 @@ export function proposePlanes(
 function countPairs(chip: Chip, layerOf: (channel: number) => number): Map<string, LayerPair> {
   const near = findNearPairs(toPieces(chip.channels), chip.joinWithinMm, () => 1, chip.file);
   const counts = new Map<string, LayerPair>();
-  for (const { a, b } of layerCrossings(near, chip.ports, chip.joinWithinMm, layerOf)) {
-    const known = counts.get(`${a} ${b}`);
-    if (known === undefined) counts.set(`${a} ${b}`, { a, b, count: 1 });
-    else known.count++;
-  }
+  for (const { a, b } of layerCrossings(near, chip.ports, chip.joinWithinMm, layerOf))
+    remembered(counts, `${a} ${b}`, () => ({ a, b, count: 0 })).count++;
   return counts;
 }

@@ -7,6 +7,7 @@
  * syringe pump's supply pressure is simply the pressure of that node.
  */
 
+import { remembered } from '../by-key.ts';
 import { type Balance, balanceOf } from './balance.ts';
 import { drivesOf, type PortDrive } from './drives.ts';
 import type { FlowGraph } from './flow-graph.ts';
@@ -165,12 +166,9 @@ function analysisFor(
       else if (kinds[port] === 'flow') injected.push(driveNode[port]);
     }
   });
-  const key = `${fixed.join()}|${injected.join()}`;
-  const known = analyses.get(key);
-  if (known !== undefined) return known;
-  const analysis = analyseGraph(graph, Int32Array.from(fixed), Int32Array.from(injected));
-  analyses.set(key, analysis);
-  return analysis;
+  return remembered(analyses, `${fixed.join()}|${injected.join()}`, () =>
+    analyseGraph(graph, Int32Array.from(fixed), Int32Array.from(injected)),
+  );
 }
 
 /** Third phase. The drives must be of the kinds that were factored. */
@@ -225,9 +223,7 @@ function holdsConflict(
   for (const port of ports) {
     const drive = drives[port];
     if (drive.kind !== 'pressure') continue;
-    const before = pressureAt.get(driveNode[port]);
-    if (before !== undefined && before !== drive.pressurePa) return true;
-    pressureAt.set(driveNode[port], drive.pressurePa);
+    if (remembered(pressureAt, driveNode[port], () => drive.pressurePa) !== drive.pressurePa) return true;
   }
   return false;
 }

@@ -4,6 +4,7 @@
  * biconnected block with that node. Everything else hangs on one node only, be it a stub, a tree or a loop, and carries nothing.
  * Source: R. Tarjan, SIAM J. Comput. 1 (1972) 146 (blocks by depth-first search). Cost O(nodes + edges), no recursion.
  */
+import { toGroups } from '../groups.ts';
 import type { FlowGraph } from './flow-graph.ts';
 
 export interface LiveGraph {
@@ -67,21 +68,14 @@ export function findLiveEdges(
 }
 
 function edgesAtNodes({ nodeCount, from, to }: FlowGraph) {
-  const start = new Int32Array(nodeCount + 1);
+  const nodeOf = new Int32Array(2 * from.length).fill(-1);
   for (let e = 0; e < from.length; e++) {
     if (from[e] === to[e]) continue;
-    start[from[e] + 1]++;
-    start[to[e] + 1]++;
+    nodeOf[2 * e] = from[e];
+    nodeOf[2 * e + 1] = to[e];
   }
-  for (let i = 0; i < nodeCount; i++) start[i + 1] += start[i];
-  const edgeAt = new Int32Array(start[nodeCount]);
-  const cursor = start.slice(0, nodeCount);
-  for (let e = 0; e < from.length; e++) {
-    if (from[e] === to[e]) continue;
-    edgeAt[cursor[from[e]]++] = e;
-    edgeAt[cursor[to[e]]++] = e;
-  }
-  return { start, edgeAt };
+  const { first, item } = toGroups(nodeCount, nodeOf);
+  return { start: first, edgeAt: item.map((side) => side >> 1) };
 }
 
 function depthFirst(

@@ -3,7 +3,7 @@
  * Source: B. D. H. Tellegen, Philips Res. Rep. 7 (1952) 259; S. W. Director & R. A. Rohrer, IEEE Trans. Circuit Theory 16 (1969) 318.
  * With q_f the adjoint flows and Q_f the flows: ∂(flow)/∂R_f = −q_f Q_f, ∂(pressure)/∂R_f = +q_f Q_f. Exact, since the network is linear and symmetric.
  */
-import { type GraphFactor, type GraphFlow, solveGraph } from './graph.ts';
+import { type GraphFactor, type GraphFlow, type GraphLoad, solveGraph } from './graph.ts';
 
 export interface Gradient {
   /** With respect to the resistance of each edge. */
@@ -16,46 +16,39 @@ export interface Gradient {
 
 /** Gradient of the flow of one edge. */
 export function gradientOfFlow(factor: GraphFactor, flow: GraphFlow, edge: number): Gradient {
-  const nought = new Float64Array(factor.analysis.graph.nodeCount);
-  const adjoint = solveGraph(factor, {
-    fixedPressure: nought,
-    injection: nought,
-    source: { edge, pressure: 1 },
-  });
-  return gradientFrom(factor, flow, adjoint, 1);
+  return gradientFrom(factor, flow, { source: { edge, pressure: 1 } }, 1);
 }
 
 /** Gradient of the flow that enters at a fixed node. */
 export function gradientOfInflow(factor: GraphFactor, flow: GraphFlow, node: number): Gradient {
-  const { graph, fixedNodes } = factor.analysis;
-  if (!fixedNodes.includes(node))
+  if (!factor.analysis.fixedNodes.includes(node))
     throw new RangeError(`node ${node} is not fixed; its inflow is given, not found`);
-  const nought = new Float64Array(graph.nodeCount);
-  const unit = nought.slice();
-  unit[node] = 1;
-  const adjoint = solveGraph(factor, { fixedPressure: unit, injection: nought });
-  return gradientFrom(factor, flow, adjoint, 1);
+  return gradientFrom(factor, flow, { fixedPressure: unitAt(factor, node) }, 1);
 }
 
 /** Gradient of the pressure of an injected node (one named as such to analyseGraph). */
 export function gradientOfPressure(factor: GraphFactor, flow: GraphFlow, node: number): Gradient {
-  const { graph, injectedNodes } = factor.analysis;
-  if (!injectedNodes.includes(node))
+  if (!factor.analysis.injectedNodes.includes(node))
     throw new RangeError(`node ${node} is not among the injected nodes of the analysis`);
-  const nought = new Float64Array(graph.nodeCount);
-  const unit = nought.slice();
-  unit[node] = 1;
-  const adjoint = solveGraph(factor, { fixedPressure: nought, injection: unit });
-  return gradientFrom(factor, flow, adjoint, -1);
+  return gradientFrom(factor, flow, { injection: unitAt(factor, node) }, -1);
 }
 
+function unitAt({ analysis }: GraphFactor, node: number): Float64Array {
+  const unit = new Float64Array(analysis.graph.nodeCount);
+  unit[node] = 1;
+  return unit;
+}
+
+/** @param load of the adjoint network; what it leaves out is nought */
 function gradientFrom(
-  { analysis }: GraphFactor,
+  factor: GraphFactor,
   flow: GraphFlow,
-  adjoint: GraphFlow,
+  load: Partial<GraphLoad>,
   sign: 1 | -1,
 ): Gradient {
-  const { graph, fixedNodes } = analysis;
+  const { graph, fixedNodes } = factor.analysis;
+  const nought = new Float64Array(graph.nodeCount);
+  const adjoint = solveGraph(factor, { fixedPressure: nought, injection: nought, ...load });
   const resistance = flow.flow.map((Q, e) => 0 - sign * adjoint.flow[e] * Q);
   const pressure = new Float64Array(graph.nodeCount);
   const injection = adjoint.pressureHi.map((p) => 0 - sign * p);

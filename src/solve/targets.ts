@@ -5,6 +5,7 @@
  * Wall shear, velocity and residence time say how much flows and not which way. The way is that in which the reach flows under the run sheet as written; where
  * nothing flows there, that in which `by` drives it by pushing into the chip, or by drawing out of it where it says `expect: out`.
  */
+import { remembered } from '../by-key.ts';
 import { foundPumpLimits, pumpLimitValues } from '../chip/pump-limits.ts';
 import type { Run } from '../chip/types.ts';
 import { InputError } from '../errors.ts';
@@ -145,7 +146,10 @@ function prepareSystem({ network, run }: RunNetwork, sheet: RunSheet, wanted: re
   return { network, run, prepared, factor, start, base, units, rows, dense };
 }
 
-function driveOf(kind: 'pressure' | 'flow', setting: number): PortDrive {
+function driveOf(
+  kind: 'pressure' | 'flow',
+  setting: number,
+): Extract<PortDrive, { kind: 'pressure' | 'flow' }> {
   return kind === 'pressure' ? { kind, pressurePa: setting } : { kind, flowM3s: setting };
 }
 
@@ -160,9 +164,7 @@ function refuseSharedNodes(
   const holders = new Map<number, number[]>();
   start.forEach(({ kind }, port) => {
     if (kind !== 'pressure') return;
-    const ports = holders.get(driveNode[port]) ?? [];
-    ports.push(port);
-    holders.set(driveNode[port], ports);
+    remembered(holders, driveNode[port], () => []).push(port);
   });
   for (const { index, port } of wanted) {
     const other = holders.get(driveNode[port])?.find((holder) => holder !== port);
@@ -184,47 +186,36 @@ function refuseUnknown(
   unit: FlowState,
 ): void {
   const { chip, portNode } = network;
-  const partOf = (node: number): FlowState['parts'][number] => base.parts[base.nodePart[node]];
-  const byName = quote(chip.ports[port].name);
-  if (base.nodePart[nodeOf(network, observed)] !== base.nodePart[portNode[port]]) {
-    refuseTarget(sheet, index, `${quote(name)} does not feel ${byName}: no channel connects them`);
-  }
-  const by = partOf(portNode[port]);
-  if (by.status === 'no-reference' || by.status === 'flows-do-not-add-up') {
-    refuseTarget(
-      sheet,
-      index,
-      `by: every port that ${byName} is connected with is given a flow or closed, so what ${byName} gives is fixed by the others; give one of them a pressure, a head or open`,
-    );
-  }
-  switch (by.status) {
+  const refuse = (what: string): never => refuseTarget(sheet, index, what);
+  const by = quote(chip.ports[port].name);
+  const what = quote(name);
+  const part = base.nodePart[portNode[port]];
+  if (base.nodePart[nodeOf(network, observed)] !== part)
+    refuse(`${what} does not feel ${by}: no channel connects them`);
+  const { status } = base.parts[part];
+  switch (status) {
     case 'solved':
     case 'no-drive': // not so: `by` drives it
       break;
-    case 'unsized':
-      refuseTarget(
-        sheet,
-        index,
-        `${quote(name)} can't be computed: a channel it is connected with has no depth; give its layer one`,
+    case 'no-reference':
+    case 'flows-do-not-add-up':
+      refuse(
+        `by: every port that ${by} is connected with is given a flow or closed, so what ${by} gives is fixed by the others; give one of them a pressure, a head or open`,
       );
+      break;
+    case 'unsized':
+      refuse(`${what} can't be computed: a channel it is connected with has no depth; give its layer one`);
       break;
     case 'conflict':
-      refuseTarget(
-        sheet,
-        index,
-        `${quote(name)} can't be computed: ports that open into one place hold it at different pressures`,
-      );
+      refuse(`${what} can't be computed: ports that open into one place hold it at different pressures`);
       break;
     default:
-      by.status satisfies never;
+      status satisfies never;
   }
-  if (Number.isNaN(observe(base, observed)) || Number.isNaN(observe(unit, observed))) {
-    refuseTarget(
-      sheet,
-      index,
-      `the flow of ${quote(name)} can't be told: another port holds the same place of the chip at the same pressure; give one of them tubing`,
+  if (Number.isNaN(observe(base, observed)) || Number.isNaN(observe(unit, observed)))
+    refuse(
+      `the flow of ${what} can't be told: another port holds the same place of the chip at the same pressure; give one of them tubing`,
     );
-  }
 }
 
 function nodeOf({ portNode, reachFrom }: Network, observed: Wanted['observed']): number {
@@ -438,10 +429,7 @@ function conditionsOf(
 ): readonly PortCondition[] {
   const conditions = ports.map(({ condition }) => condition);
   wanted.forEach(({ port, drive }, i) => {
-    conditions[port] =
-      drive === 'pressure'
-        ? { kind: 'pressure', pressurePa: settings[i] + 0 }
-        : { kind: 'flow', flowM3s: settings[i] + 0 };
+    conditions[port] = driveOf(drive, settings[i] + 0);
   });
   return conditions;
 }

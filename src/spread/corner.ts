@@ -29,22 +29,18 @@ export function worstCorner(
   linearSd: Float64Array,
   derivatives: Derivatives,
 ): WorstCorner | null {
-  let least: { output: number; side: 'min' | 'max'; limit: number; room: number } | null = null;
-  outputs.forEach(({ min, max }, output) => {
+  let found: Pick<WorstCorner, 'output' | 'side' | 'limit' | 'room'> | null = null;
+  for (const [output, asked] of outputs.entries()) {
     // below is what rounding leaves of a number that nothing moves
-    if (!(linearSd[output] > 1e-12 * Math.abs(nominal[output]))) return;
-    for (const [side, limit] of [
-      ['min', min],
-      ['max', max],
-    ] as const) {
+    if (!(linearSd[output] > 1e-12 * Math.abs(nominal[output]))) continue;
+    for (const side of ['min', 'max'] as const) {
+      const limit = asked[side];
       if (limit === null) continue;
       const distance = side === 'min' ? nominal[output] - limit : limit - nominal[output];
       const room = distance / linearSd[output];
-      if (least === null || room < least.room) least = { output, side, limit, room };
+      if (found === null || room < found.room) found = { output, side, limit, room };
     }
-  });
-  // assigned in a callback, which the type does not see
-  const found = least as { output: number; side: 'min' | 'max'; limit: number; room: number } | null;
+  }
   if (found === null) return null;
   const row = derivatives.of(outputs[found.output]);
   if (row === null) return null;

@@ -1,4 +1,3 @@
-import { densityAt, viscosityAt } from '../chip/fluid.ts';
 /**
  * First-order spread (JCGM 100:2008, 5.1.2): u²(y) = Σ_k (∂y/∂x_k)² u²(x_k) over independent x_k.
  * Derivatives are exact: of flows and pressures by the adjoint network (solve/sensitivity.ts), of duct resistance, shear and peak
@@ -6,6 +5,8 @@ import { densityAt, viscosityAt } from '../chip/fluid.ts';
  * temperature (fourth order), and that of the mean shear on an etched floor (physics/section.ts).
  * Cost: one more solve with the nominal factor for each flow or pressure, and O(reaches + channels) sums.
  */
+import { remembered } from '../by-key.ts';
+import { densityAt, viscosityAt } from '../chip/fluid.ts';
 import { GRAVITY_M_S2 } from '../physics/constants.ts';
 import type { DuctFactors } from '../physics/duct.ts';
 import { shearPerGradient } from '../physics/duct-state.ts';
@@ -42,13 +43,10 @@ export function derivativesOf(model: SpreadModel): Derivatives {
   // the reaches of a window are asked for by several outputs in a row
   const recent = new Map<number, Float64Array>();
   const flowRow = (reach: number): Float64Array => {
-    let row = recent.get(reach);
-    if (row === undefined) {
-      row = rowOf(gradientOfFlow(model.factor.graphFactor, state.flow, reach));
-      if (recent.size >= 16) recent.clear();
-      recent.set(reach, row);
-    }
-    return row;
+    if (recent.size >= 16 && !recent.has(reach)) recent.clear();
+    return remembered(recent, reach, () =>
+      rowOf(gradientOfFlow(model.factor.graphFactor, state.flow, reach)),
+    );
   };
 
   return {

@@ -7,29 +7,26 @@
  * Every number depends on seed, dimension and index alone.
  */
 
-export const EVEN_DIMENSIONS = 32;
 const PRIMES = [
   2, 3, 5, 7, 11, 13, 17, 19, 23, 29, 31, 37, 41, 43, 47, 53, 59, 61, 67, 71, 73, 79, 83, 89, 97, 101, 103,
   107, 109, 113, 127, 131,
 ];
 
-export interface DrawSource {
-  /** Number strictly between 0 and 1 of one dimension of one draw, both counted from 0. */
-  readonly uniform: (dimension: number, index: number) => number;
-}
+export const EVEN_DIMENSIONS = PRIMES.length;
+
+/** Number strictly between 0 and 1 of one dimension of one draw, both counted from 0. */
+export type Uniform = (dimension: number, index: number) => number;
 
 /** @param seed a whole number from 0 to 2⁵³ − 1 */
-export function drawSource(seed: number): DrawSource {
+export function uniformFrom(seed: number): Uniform {
   if (!Number.isSafeInteger(seed) || seed < 0)
     throw new RangeError(`a seed is a whole number from 0 up, not ${seed}`);
   const key = hash(seed % 2 ** 32, Math.floor(seed / 2 ** 32), 0, 0);
   const shuffled: ShuffledDigits[] = [];
-  return {
-    uniform: (dimension, index) => {
-      if (dimension >= EVEN_DIMENSIONS) return randomUniform(key, dimension, index);
-      shuffled[dimension] ??= shuffleDigits(key, dimension);
-      return radicalInverse(shuffled[dimension], index);
-    },
+  return (dimension, index) => {
+    if (dimension >= EVEN_DIMENSIONS) return randomUniform(key, dimension, index);
+    shuffled[dimension] ??= shuffleDigits(key, dimension);
+    return radicalInverse(shuffled[dimension], index);
   };
 }
 

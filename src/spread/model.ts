@@ -4,6 +4,7 @@
  * factorisation into the same memory and one solve.
  */
 
+import { remembered } from '../by-key.ts';
 import { densityAt, viscosityAt } from '../chip/fluid.ts';
 import type { Fluid } from '../chip/types.ts';
 import type { Network } from '../network/types.ts';
@@ -69,22 +70,11 @@ export function prepareModel(
   const balancedBy = balancingPorts(factor, drives);
   const sections = gatherSections(network, variables);
   const holder = holdersOf(factor.prepared.driveNode, drives);
-  const at = evaluator({ network, run, variables, drives, factor, balancedBy, sections, holder });
+  const parts = { network, run, variables, drives, sections, factor, balancedBy, holder };
+  const at = evaluator(parts);
   const nominalState = at(new Float64Array(variables.length));
   if (nominalState === null) throw new RangeError('the chip itself can not be computed');
-  return {
-    network,
-    run,
-    variables,
-    drives,
-    sections,
-    factor,
-    nominal,
-    nominalState: ownState(nominalState),
-    balancedBy,
-    holder,
-    at,
-  };
+  return { ...parts, nominal, nominalState: ownState(nominalState), at };
 }
 
 /** A dead end has the pressure of the live node it hangs on, so that node is watched instead. */
@@ -160,22 +150,12 @@ function gatherSections({ chip, reachChannel }: Network, variables: readonly Var
       maskVariable,
       ownVariable: ownOfChannel.get(c) ?? -1,
     };
-    const key = Object.values(made).join();
-    let index = known.get(key);
-    if (index === undefined) {
-      index = section.length;
-      known.set(key, index);
-      section.push(made);
-    }
-    return index;
+    return remembered(known, Object.values(made).join(), () => section.push(made) - 1);
   });
   return { ofReach: reachChannel.map((channel) => ofChannel[channel]), section };
 }
 
-type Parts = Pick<
-  SpreadModel,
-  'network' | 'run' | 'variables' | 'drives' | 'factor' | 'balancedBy' | 'sections' | 'holder'
->;
+type Parts = Omit<SpreadModel, 'nominal' | 'nominalState' | 'at'>;
 
 function evaluator(parts: Parts): SpreadModel['at'] {
   const { network, run, variables, drives, factor, balancedBy, sections, holder } = parts;
@@ -272,12 +252,9 @@ function evaluator(parts: Parts): SpreadModel['at'] {
 /** Of several ports that hold one node at a pressure the first speaks for it. */
 function holdersOf(driveNode: Int32Array, drives: readonly PortDrive[]): Int32Array {
   const first = new Map<number, number>();
-  return driveNode.map((node, port) => {
-    if (drives[port].kind !== 'pressure') return -1;
-    const known = first.get(node);
-    if (known === undefined) first.set(node, port);
-    return known ?? port;
-  });
+  return driveNode.map((node, port) =>
+    drives[port].kind === 'pressure' ? remembered(first, node, () => port) : -1,
+  );
 }
 
 function formAt(

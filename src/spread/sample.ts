@@ -1,5 +1,5 @@
 import type { Judge } from './judge.ts';
-import { drawSource } from './low-discrepancy.ts';
+import { uniformFrom } from './low-discrepancy.ts';
 import type { SpreadModel } from './model.ts';
 import { type Output, outputValue } from './outputs.ts';
 import { deviate } from './variables.ts';
@@ -34,7 +34,7 @@ export function drawer(
   seed: number,
 ): (index: number, into: SampleColumns) => void {
   const { variables } = model;
-  const { uniform } = drawSource(seed);
+  const uniform = uniformFrom(seed);
   const x = new Float64Array(variables.length);
   const values = new Float64Array(outputs.length);
   const needed = [...new Set([...Array(followed).keys(), ...judge.limited])];

@@ -64,13 +64,8 @@ export function listVariables({ network, run }: RunNetwork, tolerances: Toleranc
   const causes: Cause[] = [];
   const variables: Variable[] = [];
   const idle: string[] = [];
-  const add = (
-    key: string,
-    text: string,
-    tolerance: Tolerance,
-    kinds: readonly VariableKind[],
-    why: string,
-  ): void => {
+  const add: Add = (key, text, tolerance, kinds, why) => {
+    if (tolerance === null) return;
     if (tolerance.value === 0) idle.push(`${key}: it is nought`);
     else if (kinds.length === 0) idle.push(`${key}: ${why}`);
     else {
@@ -83,31 +78,26 @@ export function listVariables({ network, run }: RunNetwork, tolerances: Toleranc
   const sized = chip.channels.flatMap(({ drawnWidthMm }, channel) => (drawnWidthMm > 0 ? [channel] : []));
   const mask: readonly VariableKind[] = sized.length === 0 ? [] : [{ kind: 'mask width' }];
   const noChannel = 'no channel has a width';
-  if (width !== null) add('width', 'width of the whole mask', width, mask, noChannel);
-  if (widthBias !== null) add('width_bias', 'width of the whole mask', widthBias, mask, noChannel);
-  if (widthOwn !== null) {
-    const own = sized.map((channel): VariableKind => ({ kind: 'own width', channel }));
-    add('width_own', 'own width of each channel', widthOwn, own, noChannel);
-  }
-  if (temperature !== null) {
-    const moves = feelsTemperature(run.fluid);
-    const why = 'the fluid is given by its viscosity and density';
-    add('temperature', 'temperature of the chip', temperature, moves ? [{ kind: 'temperature' }] : [], why);
-  }
-  if (viscosity !== null) add('viscosity', 'viscosity of the fluid', viscosity, [{ kind: 'viscosity' }], '');
-  if (bore !== null) {
-    const hasTubing = run.ports.some(({ tubing }) => tubing.length > 0);
-    add('bore', 'bore of the tubing', bore, hasTubing ? [{ kind: 'bore' }] : [], 'no port has tubing');
-  }
+  const own = sized.map((channel): VariableKind => ({ kind: 'own width', channel }));
+  const heat: readonly VariableKind[] = feelsTemperature(run.fluid) ? [{ kind: 'temperature' }] : [];
+  const hasTubing = run.ports.some(({ tubing }) => tubing.length > 0);
+  add('width', 'width of the whole mask', width, mask, noChannel);
+  add('width_bias', 'width of the whole mask', widthBias, mask, noChannel);
+  add('width_own', 'own width of each channel', widthOwn, own, noChannel);
+  const noHeat = 'the fluid is given by its viscosity and density';
+  add('temperature', 'temperature of the chip', temperature, heat, noHeat);
+  add('viscosity', 'viscosity of the fluid', viscosity, [{ kind: 'viscosity' }], '');
+  add('bore', 'bore of the tubing', bore, hasTubing ? [{ kind: 'bore' }] : [], 'no port has tubing');
   addPorts({ network, run }, 'pressure', tolerances.pressure, tolerances.pressureByPort, add, idle);
   addPorts({ network, run }, 'flow', tolerances.flow, tolerances.flowByPort, add, idle);
   return { causes, variables, idle };
 }
 
+/** Takes a tolerance, if there is one, with all that it moves; or why it moves nothing. */
 type Add = (
   key: string,
   text: string,
-  tolerance: Tolerance,
+  tolerance: Tolerance | null,
   kinds: readonly VariableKind[],
   why: string,
 ) => void;
@@ -119,19 +109,15 @@ function addDepths(
   idle: string[],
 ): void {
   const byKey = new Map(Object.entries(depthByLayer).map(([name, own]) => [layerKey(name), own]));
-  const used = new Set<number>();
-  for (const { layer, depthMm } of chip.channels) if (!Number.isNaN(depthMm)) used.add(layer);
+  const used = new Set(chip.channels.flatMap(({ layer, depthMm }) => (Number.isNaN(depthMm) ? [] : [layer])));
   chip.layers.forEach(({ name }, layer) => {
     const own = byKey.get(layerKey(name));
     byKey.delete(layerKey(name));
-    const tolerance = own ?? depth;
-    if (tolerance === null) return;
     const shown = name === '' ? '(no layer)' : name;
     const kinds: readonly VariableKind[] = used.has(layer) ? [{ kind: 'depth', layer }] : [];
-    add(`depth:${shown}`, `etch depth of ${shown}`, tolerance, kinds, 'no channel of it has a depth');
+    add(`depth:${shown}`, `etch depth of ${shown}`, own ?? depth, kinds, 'no channel of it has a depth');
   });
   for (const key of byKey.keys()) idle.push(`depth:${key}: no channel lies in that layer`);
-  if (depthCommon === null) return;
   const kinds: readonly VariableKind[] = used.size > 0 ? [{ kind: 'common depth' }] : [];
   add('depth_common', 'etch depth of all layers together', depthCommon, kinds, 'no channel has a depth');
 }
@@ -148,7 +134,8 @@ function addPorts(
   network.chip.ports.forEach(({ name, drawnName }, p) => {
     const port = run.ports[p];
     const own = drawnName === null ? undefined : byPort[drawnName];
-    const isMeant = quantity === 'flow' ? isFlow(port) : isPressure(port, own !== undefined);
+    const isMeant =
+      quantity === 'flow' ? port.condition.kind === 'flow' : isPressure(port, own !== undefined);
     const tolerance = own ?? (isMeant ? all : null);
     if (tolerance === null) return;
     const moves = isMeant && !(tolerance.kind === 'relative' && isNought(port));
@@ -159,10 +146,6 @@ function addPorts(
     used ||= moves;
   });
   if (all !== null && !used) idle.push(`${quantity}: no port is given a ${quantity}`);
-}
-
-function isFlow({ condition }: PortRun): boolean {
-  return condition.kind === 'flow';
 }
 
 function isPressure({ condition }: PortRun, isNamed: boolean): boolean {

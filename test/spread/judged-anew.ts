@@ -8,7 +8,7 @@ import type { RunNetwork } from '../../src/solve/flow-network.ts';
 import { solveFlow } from '../../src/solve/flow-state.ts';
 import { observe, readTargets, targetValue } from '../../src/solve/targets-wanted.ts';
 import type { FlowState } from '../../src/solve/types.ts';
-import { drawSource } from '../../src/spread/low-discrepancy.ts';
+import { uniformFrom } from '../../src/spread/low-discrepancy.ts';
 import { deviate, listVariables, type Variable } from '../../src/spread/variables.ts';
 import type { Varying } from './spread-of.ts';
 
@@ -30,7 +30,7 @@ const RULES_OF_FLOW = RULES.filter(({ names }) => names.some((name) => FLOW_RULE
  */
 export function goodDraws({ network, run, tolerances }: Varying, draws: number, seed: number): number[] {
   const { variables } = listVariables({ network, run }, tolerances);
-  const { uniform } = drawSource(seed);
+  const uniform = uniformFrom(seed);
   return Array.from({ length: draws }, (_, i) => {
     const x = variables.map(({ tolerance }, k) => deviate(tolerance, uniform(k, i)));
     const deviation = deviationOf(variables, x);

@@ -1,5 +1,5 @@
 import { expect, test } from 'vitest';
-import { drawSource, EVEN_DIMENSIONS } from '../../src/spread/low-discrepancy.ts';
+import { EVEN_DIMENSIONS, uniformFrom } from '../../src/spread/low-discrepancy.ts';
 
 const BASES = [2, 3, 5, 7];
 
@@ -7,7 +7,7 @@ test.each(BASES.map((base, dimension) => [dimension, base]))(
   'of dimension %i the first %i^k numbers fall one into each equal part',
   (dimension, base) => {
     for (const seed of [0, 1, 123456789012]) {
-      const { uniform } = drawSource(seed);
+      const uniform = uniformFrom(seed);
       const parts = base ** 4;
       const hits = new Uint8Array(parts);
       for (let i = 0; i < parts; i++) hits[Math.floor(uniform(dimension, i) * parts)]++;
@@ -17,7 +17,7 @@ test.each(BASES.map((base, dimension) => [dimension, base]))(
 );
 
 test('every number lies strictly between 0 and 1, in every dimension and for large indices', () => {
-  const { uniform } = drawSource(1);
+  const uniform = uniformFrom(1);
   for (let dimension = 0; dimension < EVEN_DIMENSIONS + 8; dimension++) {
     for (const index of [0, 1, 2, 999, 999_999, 2 ** 31 - 1]) {
       const u = uniform(dimension, index);
@@ -28,12 +28,12 @@ test('every number lies strictly between 0 and 1, in every dimension and for lar
 });
 
 test('a number depends on seed, dimension and index alone, and seeds beyond 32 bits differ', () => {
-  const [a, b] = [drawSource(9), drawSource(9)];
-  const backwards = Array.from({ length: 200 }, (_, i) => b.uniform(i % 40, 199 - i)).reverse();
-  for (let i = 0; i < 200; i++) expect(a.uniform((199 - i) % 40, i)).toBe(backwards[i]);
+  const [a, b] = [uniformFrom(9), uniformFrom(9)];
+  const backwards = Array.from({ length: 200 }, (_, i) => b(i % 40, 199 - i)).reverse();
+  for (let i = 0; i < 200; i++) expect(a((199 - i) % 40, i)).toBe(backwards[i]);
   for (const dimension of [0, 1, 31, 32]) {
-    expect(drawSource(1).uniform(dimension, 7)).not.toBe(drawSource(2).uniform(dimension, 7));
-    expect(drawSource(1).uniform(dimension, 7)).not.toBe(drawSource(1 + 2 ** 32).uniform(dimension, 7));
+    expect(uniformFrom(1)(dimension, 7)).not.toBe(uniformFrom(2)(dimension, 7));
+    expect(uniformFrom(1)(dimension, 7)).not.toBe(uniformFrom(1 + 2 ** 32)(dimension, 7));
   }
 });
 
@@ -46,7 +46,7 @@ function gap(column: Float64Array): number {
 
 test('random dimensions are uniform and do not follow one another or the even ones', () => {
   const n = 20_000;
-  const { uniform } = drawSource(4);
+  const uniform = uniformFrom(4);
   const columns = [0, 31, 32, 33, 500].map((dimension) =>
     Float64Array.from({ length: n }, (_, i) => uniform(dimension, i)),
   );
@@ -62,7 +62,7 @@ test('random dimensions are uniform and do not follow one another or the even on
 test('an integral over six dimensions converges far faster than with independent draws', () => {
   const n = 4096;
   const errors = Array.from({ length: 12 }, (_, seed) => {
-    const { uniform } = drawSource(seed);
+    const uniform = uniformFrom(seed);
     let sum = 0;
     for (let i = 0; i < n; i++) {
       let product = 1;
@@ -79,5 +79,5 @@ test('an integral over six dimensions converges far faster than with independent
 
 test('a seed that is no whole number from 0 up is refused', () => {
   for (const seed of [-1, 0.5, Number.NaN, 2 ** 60])
-    expect(() => drawSource(seed)).toThrow('a seed is a whole number from 0 up');
+    expect(() => uniformFrom(seed)).toThrow('a seed is a whole number from 0 up');
 });

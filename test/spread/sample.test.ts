@@ -1,7 +1,7 @@
 import { expect, test } from 'vitest';
 import { ductForm } from '../../src/physics/duct.ts';
 import { makeJudge } from '../../src/spread/judge.ts';
-import { drawSource } from '../../src/spread/low-discrepancy.ts';
+import { uniformFrom } from '../../src/spread/low-discrepancy.ts';
 import { outputValue } from '../../src/spread/outputs.ts';
 import { drawer, emptyColumns } from '../../src/spread/sample.ts';
 import { spreadOf } from '../../src/spread/spread.ts';
@@ -30,7 +30,7 @@ tolerances: { depth: { deep: 10 %, flat: { limit: 4 um } }, width: 20 um, viscos
   const { network } = varying(TWO_LAYERS, sheet);
   const { causes, variables } = modelOf(varying(TWO_LAYERS, sheet));
   expect(causes.map(({ key }) => key)).toEqual(['depth:deep', 'depth:flat', 'width', 'viscosity']);
-  const { uniform } = drawSource(5);
+  const uniform = uniformFrom(5);
   const { column } = outputNamed(spread, 'feed', 'flow');
   const [first, second] = network.reachDuctMm;
   for (let i = 0; i < 200; i++) {
