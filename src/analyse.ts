@@ -2,7 +2,7 @@ import { assembleChip, type ChipInput } from './chip/assemble.ts';
 import type { Chip, Run } from './chip/types.ts';
 import { findAll } from './findings/check.ts';
 import type { FindingReport } from './findings/types.ts';
-import { networkOf } from './network/alike.ts';
+import { networkOf } from './network/network-of.ts';
 import type { Network } from './network/types.ts';
 import { drivesOf } from './solve/drives.ts';
 import { factorFlow, flowStateOf, kindsOf, prepareFlow } from './solve/flow-state.ts';

@@ -18,7 +18,7 @@ export async function run(argv: readonly string[], io: Io): Promise<number> {
   const program = toProgram(io, finish, (text) => help.push(text));
   try {
     if (argv.length === 0) {
-      io.err(`${shortUsage()}\n`);
+      io.err(SHORT_USAGE);
       return EXIT.unusable;
     }
     await program.parseAsync(argv as string[], { from: 'user' }); // commander types its argument as mutable and does not change it
@@ -38,13 +38,9 @@ function codeOf(error: unknown, io: Io): number {
   if (error instanceof CommanderError) {
     return error.exitCode === 0 ? 0 : EXIT.unusable;
   }
-  if (error instanceof InputError) {
+  if (error instanceof InputError || error instanceof WriteError) {
     io.err(`rillcheck: ${oneLine(error.message)}\n`);
-    return EXIT.unusable;
-  }
-  if (error instanceof WriteError) {
-    io.err(`rillcheck: ${oneLine(error.message)}\n`);
-    return EXIT.notWritten;
+    return error instanceof WriteError ? EXIT.notWritten : EXIT.unusable;
   }
   if (error instanceof Interrupted) {
     io.err('rillcheck: interrupted; nothing was written\n');
@@ -63,12 +59,9 @@ function oneLine(text: string): string {
   return text.replace(/[\u0000-\u001f\u007f-\u009f\u2028\u2029\u202a-\u202e\u2066-\u2069]+/g, ' ').trim();
 }
 
-function shortUsage(): string {
-  return [
-    'usage: rillcheck check LAYOUT [options]',
-    'Checks a microfluidic chip drawn as SVG before fabrication. More: rillcheck --help',
-  ].join('\n');
-}
+const SHORT_USAGE = `usage: rillcheck check LAYOUT [options]
+Checks a microfluidic chip drawn as SVG before fabrication. More: rillcheck --help
+`;
 
 function toProgram(io: Io, finish: (code: number) => void, writeHelp: (text: string) => void): Command {
   const program = new Command('rillcheck')
@@ -93,8 +86,6 @@ Examples:
   rillcheck check culture.svg -r trial.run.yaml    another run sheet; reports are named after it
 ${EXIT_CODES}`,
     );
-
   declareCommands(program, io, finish);
-
   return program;
 }

@@ -60,9 +60,9 @@ export function readAreas(
   const shapes = toShapes(areas, unitMm, wells);
   if (shapes.length === 0) return { faults, obstacles: [], channels, counted: [] };
 
-  const touching = touchedShapes(shapes, channels, ports, wells, slackMm);
-  const strips = channels.length === 0 ? null : indexStrips(channels, slackMm);
-  const isBackground = backgroundTest(channels, ports, slackMm);
+  const etched: Etched = { channels, ports, strips: indexStrips(channels, slackMm), wells, slackMm };
+  const touching = touchedShapes(shapes, etched);
+  const isBackground = backgroundTest(etched);
   const obstacles: Obstacle[] = [];
   const counted: string[] = [];
   for (const [i, shape] of shapes.entries()) {
@@ -81,9 +81,10 @@ export function readAreas(
   function judge(shape: Shape, { ends, ports: on, inWell }: Touch): Judgement {
     if (shape.dataChannel) return { kind: 'fault', reason: 'no-stroke' };
     if (inWell) return 'counted';
-    if (strips === null) return shape.mayBeChannel ? { kind: 'fault', reason: 'no-channels' } : 'counted';
+    if (channels.length === 0)
+      return shape.mayBeChannel ? { kind: 'fault', reason: 'no-channels' } : 'counted';
     if (isBackground(shape)) return 'counted';
-    const within = whereInStrips(shape, strips, channels, wells, slackMm);
+    const within = whereInStrips(shape, etched);
     if (within?.inside === true && !shape.isPad) return toObstacle(shape, within);
     if (!shape.filled) return 'counted';
     if (shape.stroked && shape.mayBeChannel) return { kind: 'fault', reason: 'stroked' };
@@ -131,27 +132,23 @@ function toShapes(
   wells: Wells,
 ): Shape[] {
   const toMm = (ring: Float64Array): Float64Array => closedRing(ring).map((value) => value * unitMm);
-  const fills = outlines.map(
-    ({ ordinal, name, rings, stroked, dataChannel }): Shape => ({
-      ...PLAIN,
-      ordinal,
-      name: name ?? 'unnamed shape',
-      // A fill closes what it fills.
-      rings: rings.map(toMm),
-      stroked,
-      dataChannel,
-      kind: 'filled outline',
-    }),
-  );
+  // A fill closes what it fills.
+  const common = ({ ordinal, name, rings }: Outline | Ignored, what: string) => ({
+    ...PLAIN,
+    ordinal,
+    name: name ?? `unnamed ${what}`,
+    rings: rings.map(toMm),
+  });
+  const fills = outlines.map((outline): Shape => {
+    const { stroked, dataChannel } = outline;
+    return { ...common(outline, 'shape'), stroked, dataChannel, kind: 'filled outline' };
+  });
   const ovals = ellipses.map(
-    ({ ordinal, name, rings, reason }): Shape => ({
-      ...PLAIN,
-      ordinal,
-      name: name ?? 'unnamed ellipse',
-      rings: rings.map(toMm),
+    (oval): Shape => ({
+      ...common(oval, 'ellipse'),
       filled: false,
       mayBeChannel: false,
-      kind: reason,
+      kind: oval.reason,
     }),
   );
   const circles = unsuitable.map((circle) => circleShape(circle, unitMm, 'circle of no port size'));
@@ -193,12 +190,18 @@ interface Touch {
   inWell: boolean;
 }
 
+/** All that is etched, with the slack of every "on" and "inside". */
+interface Etched {
+  readonly channels: readonly Channel[];
+  readonly ports: readonly Port[];
+  readonly strips: StripIndex;
+  readonly wells: Wells;
+  readonly slackMm: number;
+}
+
 function touchedShapes(
   shapes: readonly Shape[],
-  channels: readonly Channel[],
-  ports: readonly Port[],
-  wells: Wells,
-  slackMm: number,
+  { channels, ports, wells, slackMm }: Etched,
 ): readonly Touch[] {
   const touching: Touch[] = shapes.map(({ rings, circle }) => {
     const [x, y] = circle === null ? [rings[0]?.[0] ?? 0, rings[0]?.[1] ?? 0] : [circle.xMm, circle.yMm];
@@ -263,11 +266,7 @@ function isInsideWell(
 }
 
 /** Whether a shape, its holes filled, holds every centreline and every port's middle; touching its edge is inside. */
-function backgroundTest(
-  channels: readonly Channel[],
-  ports: readonly Port[],
-  slackMm: number,
-): (shape: Shape) => boolean {
+function backgroundTest({ channels, ports, slackMm }: Etched): (shape: Shape) => boolean {
   const lines = channels.flatMap(({ centrelines }) => centrelines.map(({ points }) => points));
   const places = [...lines, ...ports.map(({ xMm, yMm }) => Float64Array.of(xMm, yMm))];
   const needed = boundsOf(places);
@@ -306,19 +305,13 @@ interface Place {
 }
 
 /** Where in the etched area a shape lies; null when it lies in none. */
-function whereInStrips(
-  shape: Shape,
-  strips: StripIndex,
-  channels: readonly Channel[],
-  wells: Wells,
-  slackMm: number,
-): Place | null {
-  const { circle, rings } = shape;
+function whereInStrips({ circle, rings }: Shape, etched: Etched): Place | null {
+  const { strips, channels } = etched;
   if (circle !== null) {
     const round = strips.channelsRoundDisc(circle.xMm, circle.yMm, circle.radiusMm);
     if (round.length > 0) return { channel: widestOf(channels, round), inside: true };
   }
-  const corners = isAllEtched(rings, strips, wells, slackMm) ? cornersIn(rings, strips) : null;
+  const corners = isAllEtched(rings, etched) ? cornersIn(rings, strips) : null;
   if (corners !== null && corners.size > 0) {
     const most = Math.max(...corners.values());
     const best = [...corners].filter(([, held]) => held === most).map(([channel]) => channel);
@@ -352,14 +345,10 @@ type Side = readonly [x1: number, y1: number, x2: number, y2: number];
 const LOOKS = 6;
 
 /** Whether the edges of a shape, and what lies between them, are all in strips and wells. */
-function isAllEtched(
-  rings: readonly Float64Array[],
-  strips: StripIndex,
-  wells: Wells,
-  slackMm: number,
-): boolean {
+function isAllEtched(rings: readonly Float64Array[], etched: Etched): boolean {
+  const { strips, wells } = etched;
   const sides = rings.flatMap(sidesOf);
-  if (!sides.every((side) => isEdgeEtched(side, strips, wells, slackMm))) return false;
+  if (!sides.every((side) => isEdgeEtched(side, etched))) return false;
   const { left, top, right, bottom } = boundsOf(rings);
   // Edges along a loop of channels may enclose the material that it goes round.
   const area = indexRings([rings]);
@@ -374,7 +363,7 @@ function isAllEtched(
   return true;
 }
 
-function isEdgeEtched(side: Side, strips: StripIndex, wells: Wells, slackMm: number): boolean {
+function isEdgeEtched(side: Side, { strips, wells, slackMm }: Etched): boolean {
   const [x1, y1, x2, y2] = side;
   const span = Math.hypot(x2 - x1, y2 - y1);
   if (span === 0) return true;

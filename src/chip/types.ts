@@ -78,13 +78,11 @@ export interface Channel {
   readonly dataChannel: boolean;
 }
 
-export interface Port {
+export interface Port extends PlaceMm {
   /** Unique; unnamed ones are shown as `port-3`. */
   readonly name: string;
   readonly drawnName: string | null;
   readonly ordinal: number;
-  readonly xMm: number;
-  readonly yMm: number;
   readonly radiusMm: number;
 }
 
@@ -127,17 +125,21 @@ export interface Limits {
  */
 export type OutlineReason = 'stroked' | 'end' | 'port' | 'hairline' | 'no-channels' | 'no-stroke';
 
-/** A drawn area that is the outline of a channel, not its centreline. */
-export interface OutlineFault {
-  readonly kind: 'filled-outline';
-  readonly name: string;
+/** A place on the chip, in drawing coordinates. */
+interface PlaceMm {
   readonly xMm: number;
   readonly yMm: number;
+}
+
+/** A drawn area that is the outline of a channel, not its centreline. */
+export interface OutlineFault extends PlaceMm {
+  readonly kind: 'filled-outline';
+  readonly name: string;
   readonly reason: OutlineReason;
   /** Names of the ports that touch it or lie on it. */
   readonly ports: readonly string[];
   /** Names of the channels that end on it, and where each does. */
-  readonly ends: readonly { readonly channel: string; readonly xMm: number; readonly yMm: number }[];
+  readonly ends: readonly ({ readonly channel: string } & PlaceMm)[];
 }
 
 /** A drawn area in or across a channel that is no port: it is not in the model. */
@@ -151,28 +153,16 @@ export interface Obstacle {
   /** mm, first point repeated at the end. */
   readonly rings: readonly Float64Array[];
   /** The circle itself where it is one. */
-  readonly circle: { readonly xMm: number; readonly yMm: number; readonly radiusMm: number } | null;
+  readonly circle: ({ readonly radiusMm: number } & PlaceMm) | null;
 }
 
 /** A fault found while reading or laying out: becomes a finding of findings/. */
 export type ReadingFault =
-  | { readonly kind: 'unsized-stroke'; readonly name: string; readonly xMm: number; readonly yMm: number }
+  | ({ readonly kind: 'unsized-stroke'; readonly name: string } & PlaceMm)
   | OutlineFault
   | { readonly kind: 'assumed-scale'; readonly reason: string }
-  | {
-      readonly kind: 'missing-depth';
-      readonly channel: string;
-      readonly layer: string;
-      readonly xMm: number;
-      readonly yMm: number;
-    }
-  | {
-      readonly kind: 'disguised-stroke';
-      readonly channel: string;
-      readonly by: string;
-      readonly xMm: number;
-      readonly yMm: number;
-    };
+  | ({ readonly kind: 'missing-depth'; readonly channel: string; readonly layer: string } & PlaceMm)
+  | ({ readonly kind: 'disguised-stroke'; readonly channel: string; readonly by: string } & PlaceMm);
 
 /**
  * What is made: what the drawing shows, in millimetres, and how deep it is. Plain data, the same for all cases of a run sheet

@@ -3,20 +3,23 @@ import { EXIT_CODES } from './exit-codes.ts';
 import type { Io } from './io.ts';
 import { FORMATS } from './options.ts';
 
+/** Runs a command, once it is chosen, and takes its exit code. */
+type Start = (run: (commands: typeof import('./all.ts')) => Promise<number>) => Promise<void>;
+
 /** Declares every command. What a command needs is loaded when it runs, so that help and version start at once. */
 export function declareCommands(program: Command, io: Io, finish: (code: number) => void): void {
-  declareCheck(program, io, finish);
-  declarePump(program, io, finish);
-  declareSpread(program, io, finish);
-  declareSection(program, io, finish);
-  declareDraft(program, io, finish);
+  const start: Start = async (run) => finish(await run(await import('./all.ts')));
+  declareCheck(program, io, start);
+  declarePump(program, io, start);
+  declareSpread(program, io, start);
+  declareSection(program, io, start);
+  declareDraft(program, io, start);
 }
 
 /** The main job. */
-function declareCheck(program: Command, io: Io, finish: (code: number) => void): void {
-  layoutOptions(program.command('check'))
+function declareCheck(program: Command, io: Io, start: Start): void {
+  layoutCommand(program, 'check')
     .description('read, check, solve and report a layout')
-    .argument('<LAYOUT>', 'the SVG drawing of the chip')
     .addHelpText(
       'after',
       `
@@ -26,17 +29,13 @@ Examples:
   rillcheck check chip.svg --colour shear --quiet
 ${EXIT_CODES}`,
     )
-    .action(async (layout, options) => {
-      const { check } = await import('./all.ts');
-      finish(await check(layout, options, io));
-    });
+    .action((layout, options) => start(({ check }) => check(layout, options, io)));
 }
 
 /** Settings for targets. */
-function declarePump(program: Command, io: Io, finish: (code: number) => void): void {
-  layoutOptions(program.command('pump'))
+function declarePump(program: Command, io: Io, start: Start): void {
+  layoutCommand(program, 'pump')
     .description('find the pump settings that meet the targets of the run sheet, and check the chip at them')
-    .argument('<LAYOUT>', 'the SVG drawing of the chip')
     .addHelpText(
       'after',
       `
@@ -50,17 +49,13 @@ Examples:
   rillcheck pump chip.svg --case culture           only this case of the run sheet
 ${EXIT_CODES}`,
     )
-    .action(async (layout, options) => {
-      const { pump } = await import('./all.ts');
-      finish(await pump(layout, options, io));
-    });
+    .action((layout, options) => start(({ pump }) => pump(layout, options, io)));
 }
 
 /** Fabrication tolerances. */
-function declareSpread(program: Command, io: Io, finish: (code: number) => void): void {
-  layoutOptions(program.command('spread'))
+function declareSpread(program: Command, io: Io, start: Start): void {
+  layoutCommand(program, 'spread')
     .description('how far fabrication tolerances move every result, and which of them to pay for')
-    .argument('<LAYOUT>', 'the SVG drawing of the chip')
     .option('--draws <N>', 'draws in the sample', '10000')
     .option('--seed <N>', 'another seed gives another sample; the same gives the same', '1')
     .option('--samples <FILE>', 'write every draw as CSV')
@@ -77,14 +72,11 @@ Examples:
 ${EXIT_CODES}
        Ctrl-C while draws are made reports those made so far, marked as such`,
     )
-    .action(async (layout, options) => {
-      const { spread } = await import('./all.ts');
-      finish(await spread(layout, options, io));
-    });
+    .action((layout, options) => start(({ spread }) => spread(layout, options, io)));
 }
 
 /** One duct. */
-function declareSection(program: Command, io: Io, finish: (code: number) => void): void {
+function declareSection(program: Command, io: Io, start: Start): void {
   program
     .command('section')
     .description('one straight duct without a layout: resistance, flow, pressure, wall shear')
@@ -112,14 +104,11 @@ Examples:
   rillcheck section --width "100 um" --depth "50 um" --length "10 mm" --pressure "12 kPa" --viscosity "1 mPa s" --density "1000 kg/m^3" --json
 ${EXIT_CODES}`,
     )
-    .action(async (options) => {
-      const { section } = await import('./all.ts');
-      finish(await section(options, io));
-    });
+    .action((options) => start(({ section }) => section(options, io)));
 }
 
 /** A first run sheet. */
-function declareDraft(program: Command, io: Io, finish: (code: number) => void): void {
+function declareDraft(program: Command, io: Io, start: Start): void {
   program
     .command('draft')
     .description('write a first run sheet for a layout, with what must be filled in marked')
@@ -135,15 +124,14 @@ Examples:
   rillcheck draft chip.svg --force      begins anew
 ${EXIT_CODES}`,
     )
-    .action(async (layout, options) => {
-      const { draft } = await import('./all.ts');
-      finish(await draft(layout, options, io));
-    });
+    .action((layout, options) => start(({ draft }) => draft(layout, options, io)));
 }
 
-/** Options of every command that reads, solves and reports a layout. */
-function layoutOptions(command: Command) {
-  return command
+/** A command that reads, solves and reports a layout, with the options that all such have. */
+function layoutCommand(program: Command, name: string) {
+  return program
+    .command(name)
+    .argument('<LAYOUT>', 'the SVG drawing of the chip')
     .option('-r, --run <FILE>', 'the run sheet (default: LAYOUT with .run.yaml; - for stdin)')
     .option('--case <NAME>', 'only this case')
     .option('-o, --out <DIR>', 'where reports go', 'reports')

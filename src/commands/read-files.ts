@@ -5,8 +5,8 @@ import { InputError } from '../errors.ts';
 import { utf8Length } from '../utf8-length.ts';
 import type { Io } from './io.ts';
 
-export const MAX_LAYOUT_BYTES = 32 * 1024 * 1024;
-export const MAX_RUN_SHEET_BYTES = 1024 * 1024;
+const MAX_LAYOUT_BYTES = 32 * 1024 * 1024;
+const MAX_RUN_SHEET_BYTES = 1024 * 1024;
 
 export interface InputFile {
   /** As given on the command line, for messages. */

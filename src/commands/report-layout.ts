@@ -12,12 +12,12 @@ import { reportNames } from './report-names.ts';
 import { type ShownFile, writeReports, writtenText } from './write-reports.ts';
 
 /** What a command adds to a check. */
-export interface Extra {
-  /** In the names of its reports; null for check, whose reports are the layout's own. */
-  readonly command: 'pump' | 'spread' | null;
+interface Extra {
+  /** In the names of its reports. */
+  readonly command: 'pump' | 'spread';
   readonly options: Pick<CheckLayoutOptions, 'pump' | 'spread' | 'onStage'>;
-  /** Said where it needs a run sheet and there is none; null where it can do without. */
-  readonly noRunSheet: string | null;
+  /** Said where there is no run sheet. */
+  readonly noRunSheet: string;
   /** What it prints above the summary of the check. */
   readonly text: (report: Report, columns: number) => string;
   /** Files of its own, written with the reports, all or none. */
@@ -25,7 +25,7 @@ export interface Extra {
 }
 
 /**
- * Reads, computes and writes: what check, pump and spread have in common.
+ * Reads, computes and writes: all of check, and what pump and spread have in common with it.
  * @returns the report; what its verdict says goes into the exit code (`verdictCode`)
  * Errors: InputError, WriteError, Interrupted as the parts.
  */
@@ -33,7 +33,7 @@ export async function reportLayout(
   layoutPath: string,
   options: LayoutOptions,
   io: Io,
-  { command, options: asked, noRunSheet, text, files }: Extra,
+  extra?: Extra,
 ): Promise<Report> {
   const formats = formatsOf(options);
   const progress = stageProgress(io, options.quiet === true || options.json === true);
@@ -41,27 +41,27 @@ export async function reportLayout(
     await progress.stage('reading');
     const layout = await readLayout(layoutPath, io);
     const runSheet = await readRunSheet(layoutPath, options.run, io);
-    if (runSheet === null && noRunSheet !== null)
-      throw new InputError(defaultRunSheet(layoutPath), noRunSheet);
+    if (runSheet === null && extra !== undefined)
+      throw new InputError(defaultRunSheet(layoutPath), extra.noRunSheet);
     const report = await checkLayout(
       { layout, runSheet },
       {
         ...(options.case === undefined ? {} : { case: options.case }),
         onStage: (stage, name) => progress.stage(name === null ? stage : `${name}: ${stage}`),
-        ...asked,
+        ...extra?.options,
       },
     );
-    const names = reportNames(reportName(layoutPath, options.run), command, report);
+    const names = reportNames(reportName(layoutPath, options.run), extra?.command ?? null, report);
     const inputs = runSheet === null ? [layout] : [layout, runSheet];
     const written = await writeReports(
-      { report, formats, names, inputs, options, more: files?.(report) ?? [] },
+      { report, formats, names, inputs, options, more: extra?.files?.(report) ?? [] },
       io,
       progress,
     );
     progress.done();
     if (options.json !== true) {
       const terminal = terminalOptions(options, io);
-      if (!terminal.quiet) await io.out(text(report, terminal.columns));
+      if (!terminal.quiet && extra !== undefined) await io.out(extra.text(report, terminal.columns));
       await io.out(terminalSummary(report, terminal));
       if (!terminal.quiet) await io.out(writtenText(written, terminal.columns));
     }

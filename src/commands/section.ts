@@ -34,7 +34,7 @@ export async function section(options: SectionOptions, io: Io): Promise<number> 
     densityKgM3,
     given: givenOf(options),
   };
-  const state = computed(input);
+  const state = naming('section', () => computeSection(input));
   await io.out(
     options.json === true ? sectionJson(input, state, fluid) : sectionText(input, state, fluid, io.columns),
   );
@@ -77,17 +77,11 @@ function fluidOf({ viscosity, density, temperature }: SectionOptions): Filling {
   if (viscosity === undefined && density === undefined) {
     const temperatureK =
       temperature === undefined ? DEFAULT_TEMPERATURE_K : read('--temperature', temperature, 'temperature');
-    try {
-      const viscosityPaS = waterViscosity(temperatureK);
-      return {
-        fluid: { name: 'water', temperatureK },
-        viscosityPaS,
-        densityKgM3: waterDensity(temperatureK),
-      };
-    } catch (error) {
-      if (!(error instanceof RangeError)) throw error;
-      throw new InputError('--temperature', error.message, { cause: error });
-    }
+    return naming('--temperature', () => ({
+      fluid: { name: 'water', temperatureK },
+      viscosityPaS: waterViscosity(temperatureK),
+      densityKgM3: waterDensity(temperatureK),
+    }));
   }
   if (temperature !== undefined) {
     throw new InputError(
@@ -95,21 +89,17 @@ function fluidOf({ viscosity, density, temperature }: SectionOptions): Filling {
       'says nothing about a fluid given by viscosity and density; leave it out, or leave those out for water',
     );
   }
-  if (viscosity === undefined)
-    throw new InputError(
-      '--viscosity',
-      'is needed with --density; write for example --viscosity "0.94 mPa s"',
-    );
-  if (density === undefined)
-    throw new InputError(
-      '--density',
-      'is needed with --viscosity; write for example --density "1003 kg/m^3"',
-    );
+  if (viscosity === undefined) throw needed('--viscosity', '--density', '0.94 mPa s');
+  if (density === undefined) throw needed('--density', '--viscosity', '1003 kg/m^3');
   return {
     fluid: { name: 'as given', temperatureK: null },
     viscosityPaS: above0('--viscosity', viscosity, 'viscosity'),
     densityKgM3: above0('--density', density, 'density'),
   };
+}
+
+function needed(option: string, other: string, example: string): InputError {
+  return new InputError(option, `is needed with ${other}; write for example ${option} "${example}"`);
 }
 
 function above0(option: string, text: string, quantity: Quantity, exampleUnit?: string): number {
@@ -119,20 +109,16 @@ function above0(option: string, text: string, quantity: Quantity, exampleUnit?: 
 }
 
 function read(option: string, text: string, quantity: Quantity, exampleUnit?: string): number {
-  try {
-    return parseQuantity(text, quantity, exampleUnit);
-  } catch (error) {
-    if (!(error instanceof QuantityError)) throw error;
-    throw new InputError(option, error.message, { cause: error });
-  }
+  return naming(option, () => parseQuantity(text, quantity, exampleUnit));
 }
 
-function computed(input: SectionInput): SectionState {
+/** What is made, or the error that names the option it comes from. */
+function naming<T>(option: string, make: () => T): T {
   try {
-    return computeSection(input);
+    return make();
   } catch (error) {
-    if (!(error instanceof RangeError)) throw error;
-    throw new InputError('section', error.message, { cause: error });
+    if (!(error instanceof QuantityError || error instanceof RangeError)) throw error;
+    throw new InputError(option, error.message, { cause: error });
   }
 }
 

@@ -2,6 +2,7 @@ import { randomBytes } from 'node:crypto';
 import { existsSync } from 'node:fs';
 import { mkdir, open, rename, rm, stat } from 'node:fs/promises';
 import { basename, dirname, join } from 'node:path';
+import { inChunks } from './chunks.ts';
 import { Interrupted, type Io, WriteError } from './io.ts';
 import type { InputFile } from './read-files.ts';
 import { type OutPlace, refuseOverwriting } from './refuse-overwriting.ts';
@@ -78,15 +79,10 @@ async function writeWhole(path: string, content: OutFile['content'], io: Io): Pr
     if (content instanceof Uint8Array) {
       await handle.writeFile(content);
     } else {
-      let chunk = '';
-      for (const text of content) {
-        chunk += text;
-        if (chunk.length < CHUNK_CHARACTERS) continue;
+      for (const chunk of inChunks(content, CHUNK_CHARACTERS)) {
         await handle.appendFile(chunk, 'utf8');
-        chunk = '';
         if (io.isInterrupted()) throw new Interrupted();
       }
-      await handle.appendFile(chunk, 'utf8');
     }
   } finally {
     await handle.close();

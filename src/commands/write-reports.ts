@@ -1,9 +1,11 @@
 import { basename, dirname, join } from 'node:path';
+import { grouped } from '../by-key.ts';
 import { writeReachesCsv, writeSegmentsCsv } from '../report/csv.ts';
 import { writeJson } from '../report/json.ts';
 import { cleanText, wrapText } from '../report/plain-text.ts';
 import type { Report } from '../report/report.ts';
 import { writeSpreadCsv } from '../report/spread-csv.ts';
+import { inChunks } from './chunks.ts';
 import type { Io } from './io.ts';
 import type { Format, LayoutOptions } from './options.ts';
 import { writePdf } from './pdf.ts';
@@ -13,7 +15,7 @@ import { refuseOverwriting } from './refuse-overwriting.ts';
 import type { ReportNames } from './report-names.ts';
 import { type OutFile, writeFiles } from './write-files.ts';
 
-export interface ReportPlan {
+interface ReportPlan {
   readonly report: Report;
   readonly formats: readonly Format[];
   readonly names: ReportNames;
@@ -21,7 +23,7 @@ export interface ReportPlan {
   readonly inputs: readonly InputFile[];
   readonly options: Pick<LayoutOptions, 'out' | 'json' | 'detail' | 'colour' | 'paper'>;
   /** Files of the command's own, written with the reports, all or none. */
-  readonly more?: readonly ShownFile[];
+  readonly more: readonly ShownFile[];
 }
 
 /** A file with its path as a person would write it. */
@@ -36,7 +38,7 @@ export interface ShownFile extends OutFile {
  * Errors: InputError when a file would be written over one that was read; WriteError when a file can't be written whole.
  */
 export async function writeReports(plan: ReportPlan, io: Io, progress: Progress): Promise<readonly string[]> {
-  const { report, formats, inputs, options, more = [] } = plan;
+  const { report, formats, inputs, options, more } = plan;
   const planned = formats.flatMap((format) =>
     filesOf(plan, format, io).map(({ name, content }) => {
       const shown = join(options.out, name);
@@ -53,7 +55,7 @@ export async function writeReports(plan: ReportPlan, io: Io, progress: Progress)
   files.push(...more);
   await writeFiles(files, inputs, io);
   if (options.json === true) {
-    for (const chunk of inChunks(writeJson(report.result, options.detail))) await io.out(chunk);
+    for (const chunk of inChunks(writeJson(report.result, options.detail), 1 << 16)) await io.out(chunk);
   }
   return files.map(({ shown }) => shown);
 }
@@ -62,12 +64,12 @@ const WAY_OUT = 'choose another folder with --out, or write nothing with --forma
 
 /** "written to reports: culture.pdf, culture.case-seed.svg", a line end behind each folder; nothing when nothing was. */
 export function writtenText(paths: readonly string[], columns: number): string {
-  const names = new Map<string, string[]>();
-  for (const path of paths) names.set(dirname(path), [...(names.get(dirname(path)) ?? []), basename(path)]);
-  return [...names]
+  return [...grouped(paths, dirname)]
     .flatMap(([folder, written]) =>
       wrapText(
-        cleanText(`written to ${folder === '.' ? 'this folder' : folder}: ${written.join(', ')}`),
+        cleanText(
+          `written to ${folder === '.' ? 'this folder' : folder}: ${written.map((path) => basename(path)).join(', ')}`,
+        ),
         Math.max(40, Math.min(100, columns)),
       ),
     )
@@ -110,18 +112,4 @@ function filesOf({ report, names, options }: ReportPlan, format: Format, io: Io)
     default:
       return format satisfies never;
   }
-}
-
-const CHUNK_CHARACTERS = 1 << 16;
-
-function* inChunks(parts: Iterable<string>): Generator<string> {
-  let chunk = '';
-  for (const part of parts) {
-    chunk += part;
-    if (chunk.length >= CHUNK_CHARACTERS) {
-      yield chunk;
-      chunk = '';
-    }
-  }
-  if (chunk !== '') yield chunk;
 }

@@ -12,26 +12,10 @@ interface RuleMeasure {
  * unit of that quantity; a ratio or share is a plain number there.
  */
 export const RULE_MEASURES: ReadonlyMap<string, RuleMeasure> = new Map([
-  ...rules(
-    ['length'],
-    [
-      ...[
-        'narrow-channel',
-        'thin-wall',
-        'slender-wall',
-        'near-miss',
-        'small-port',
-        'outside-chip',
-        'edge-margin',
-      ],
-      ...['port-crowding', 'port-grid', 'tight-bend'],
-    ],
-  ),
-  ...rules(
-    ['ratio', 'share'],
-    ['roof-span', 'tall-wall', 'soft-walls', 'not-laminar', 'curved-flow', 'short-reach'],
-  ),
-  ...rules(['ratio', 'share'], ['level-sensitive', 'uneven-flow']),
+  ...rules(['length'], ['narrow-channel', 'thin-wall', 'slender-wall', 'near-miss', 'small-port']),
+  ...rules(['length'], ['outside-chip', 'edge-margin', 'port-crowding', 'port-grid', 'tight-bend']),
+  ...rules(['ratio', 'share'], ['roof-span', 'tall-wall', 'soft-walls', 'not-laminar', 'curved-flow']),
+  ...rules(['ratio', 'share'], ['short-reach', 'level-sensitive', 'uneven-flow']),
   ...rules(['angle'], ['sharp-corner']),
   ...rules(['pressure'], ['over-pressure', 'under-pressure']),
   ...rules(['time'], ['residence-window']),
@@ -40,23 +24,9 @@ export const RULE_MEASURES: ReadonlyMap<string, RuleMeasure> = new Map([
   ...rules(['length', 'ratio', 'share'], ['wrong-size', 'corner-notch', 'developing-flow'], false),
   ...rules(['flow', 'ratio', 'share'], ['stagnant', 'backflow'], false),
   ...rules(['pressure', 'flow'], ['pump-limit'], false),
-  ...rules(
-    [],
-    [
-      ...[
-        'open-end',
-        'loose-port',
-        'swallowed-channel',
-        'stray-channel',
-        'dead-port',
-        'layers-cross',
-        'assumed-scale',
-        'unset-port',
-        'default-depth',
-      ],
-      ...['ignored-shapes', 'no-edge', 'isotropic-etch', 'disguised-stroke', 'obstacle'],
-    ],
-  ),
+  ...rules([], ['open-end', 'loose-port', 'swallowed-channel', 'stray-channel', 'dead-port', 'layers-cross']),
+  ...rules([], ['assumed-scale', 'unset-port', 'default-depth', 'ignored-shapes', 'no-edge']),
+  ...rules([], ['isotropic-etch', 'disguised-stroke', 'obstacle']),
 ]);
 
 /** Rules that nobody can take on: with the fault there, the numbers themselves are wrong. */

@@ -83,17 +83,15 @@ function refuseHiddenPorts(base: MapNode, changes: MapNode, file: string, prefix
   const given = portsOf(base);
   for (const [pattern, { line }] of portsOf(changes)) {
     if (!isPattern(pattern) || given.has(pattern)) continue;
-    const hidden = [...given.keys()].find((name) => isHiddenBy(pattern, name));
+    const hidden = [...given.keys()].find(
+      (name) => matches(pattern, name) && (!isPattern(name) || name.length >= pattern.length),
+    );
     if (hidden === undefined) continue;
     throw new InputError(
       `${file}:${line}`,
       `${pathText([...prefix, 'ports', pattern])}: does not change ${quote(hidden)}, which the sheet gives an entry of its own; write in the case the names that the sheet has`,
     );
   }
-}
-
-function isHiddenBy(pattern: string, name: string): boolean {
-  return matches(pattern, name) && (!isPattern(name) || name.length >= pattern.length);
 }
 
 interface Fault {

@@ -237,6 +237,12 @@ function bare(word: string, least: number, most: number, plain: string): Kind {
   return { ...kind(word, '10', '', least, most, []), plain };
 }
 
+/** Quantities that give their dimension its name. */
+const ASKED_FOR: readonly Quantity[] = [
+  ...(['length', 'pressure', 'flow', 'time', 'velocity', 'viscosity', 'density'] as const),
+  ...(['temperature', 'angle'] as const),
+];
+
 /** What a wrong dimension is called. */
 const NAMES: ReadonlyMap<string, string> = new Map([
   ...(
@@ -254,19 +260,7 @@ const NAMES: ReadonlyMap<string, string> = new Map([
       ['a surface tension', 'N/m'],
     ] as const
   ).map(([name, unit]) => [dimensionOf(new Unit(1, unit)), name] as const),
-  ...(
-    [
-      'length',
-      'pressure',
-      'flow',
-      'time',
-      'velocity',
-      'viscosity',
-      'density',
-      'temperature',
-      'angle',
-    ] as const
-  ).map((quantity) => [KINDS[quantity].dimension, KINDS[quantity].word] as const),
+  ...ASKED_FOR.map((quantity) => [KINDS[quantity].dimension, KINDS[quantity].word] as const),
   [RATIO, 'a percentage'],
 ]);
 

@@ -74,9 +74,7 @@ export function derivativesOf(model: SpreadModel): Derivatives {
             value,
             (of) => of.resistance + shearPerGradient(of, subject.wall, subject.at),
           );
-          logs.viscosity.forEach((d, k) => {
-            row[k] += value * d;
-          });
+          addScaled(row, value, logs.viscosity);
           return row;
         }
         case 'velocity': {
@@ -88,9 +86,7 @@ export function derivativesOf(model: SpreadModel): Derivatives {
           const row = new Float64Array(model.variables.length);
           for (const reach of subject.reaches) {
             const seconds = secondsIn(reach, subject.at, model, state);
-            magnitudeRow(reach, -seconds).forEach((d, k) => {
-              row[k] += d;
-            });
+            addScaled(row, 1, magnitudeRow(reach, -seconds));
             addLogs(row, reach, seconds, (of) => (subject.at === 'mean' ? 0 : -of.peakOverMean), 1);
           }
           return row;
@@ -230,7 +226,7 @@ function gradientRows(model: SpreadModel, logs: LogDerivatives): GradientRow {
           bySection[s] * (form.byWidth.resistance * byWidth + form.byDepth.resistance * byDepth);
       }
     }
-    for (let k = 0; k < row.length; k++) row[k] += whole * logs.viscosity[k];
+    addScaled(row, whole, logs.viscosity);
     for (let p = 0; p < run.ports.length; p++) {
       const edge = tubingEdge[p];
       if (edge < 0 || Number.isNaN(gradient.resistance[edge])) continue;
@@ -263,7 +259,7 @@ function gradientRows(model: SpreadModel, logs: LogDerivatives): GradientRow {
       if (condition.kind !== 'head' || holder[p] !== p) return;
       const byDensity = known(gradient.pressure[node]) * GRAVITY_M_S2 * condition.headM;
       if (byDensity === 0) return;
-      for (let k = 0; k < row.length; k++) row[k] += byDensity * logs.density[k];
+      addScaled(row, byDensity, logs.density);
     });
   }
 
@@ -303,9 +299,7 @@ function portFlowRow(model: SpreadModel, rowOf: GradientRow, port: number): Floa
   // flows given at the node that this port holds pass straight through it
   drives.forEach(({ kind }, p) => {
     if (kind !== 'flow' || driveNode[p] !== driveNode[port]) return;
-    givenFlowRow(model, p).forEach((d, k) => {
-      row[k] -= d;
-    });
+    addScaled(row, -1, givenFlowRow(model, p));
   });
   return row;
 }
@@ -334,6 +328,11 @@ function heldPressure({ factor }: SpreadModel, node: number): Gradient {
     pressure,
     injection: new Float64Array(graph.nodeCount),
   };
+}
+
+/** row += factor · other */
+function addScaled(row: Float64Array, factor: number, other: Float64Array): void {
+  for (let k = 0; k < row.length; k++) row[k] += factor * other[k];
 }
 
 /** NaN stands for a part that does not touch the output. */

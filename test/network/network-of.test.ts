@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import type { Chip } from '../../src/chip/types.ts';
-import { networkOf } from '../../src/network/alike.ts';
 import { buildNetwork } from '../../src/network/build.ts';
+import { networkOf } from '../../src/network/network-of.ts';
 import { assembled, circle, type Draft, stroke } from '../chip/drawing.ts';
 import { chipOf } from './chip-of.ts';
 
