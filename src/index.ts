@@ -13,25 +13,31 @@ export type {
   ChipEdge,
   ChipLayer,
   Fluid,
+  LeastWall,
   Limits,
   Mixture,
+  Obstacle,
+  Origin,
+  OutlineFault,
   Port,
   PortRun,
   ReadingFault,
   Run,
+  Sourced,
 } from './chip/types.ts';
 export { type PdfFileOptions, writePdf } from './commands/pdf.ts';
 export { type DraftInput, draftRunSheet } from './draft/draft.ts';
 export { InputError } from './errors.ts';
 export { findAll } from './findings/check.ts';
 export type { FindingContext } from './findings/context.ts';
-export type { Rule } from './findings/rule.ts';
+export type { Rule, RuleOutcome } from './findings/rule.ts';
 export type { Finding, FindingReport, NotRun, Severity } from './findings/types.ts';
 export { layOut } from './layout/layout.ts';
-export type { Layout, LayoutItem } from './layout/types.ts';
+export type { Centreline, Hole, Ignored, Layout, LayoutItem, Outline, Stroke } from './layout/types.ts';
 export { buildNetwork } from './network/build.ts';
-export { type Network, NODE_KINDS, type NodeKind } from './network/types.ts';
+export { type Network, type NetworkTrace, NODE_KINDS, type NodeKind } from './network/types.ts';
 export { type DuctForm, ductForm } from './physics/duct.ts';
+export type { DuctState } from './physics/duct-state.ts';
 export { writeReachesCsv, writeSegmentsCsv } from './report/csv.ts';
 export { type Detail, writeJson } from './report/json.ts';
 export type { MapQuantity } from './report/reach-values.ts';
@@ -57,14 +63,28 @@ export type { Rows } from './report/rows.ts';
 export { type SvgOptions, svgPicture } from './report/svg.ts';
 export { type TerminalOptions, terminalSummary } from './report/terminal.ts';
 export { parseRunSheet } from './runsheet/parse.ts';
-export type { PortCondition, RunSheet, Tolerances } from './runsheet/types.ts';
-export { computeSection, type SectionInput, type SectionState } from './section/section.ts';
+export type {
+  AcceptEntry,
+  ChannelEntry,
+  LayerEntry,
+  PortCondition,
+  PortEntry,
+  ProcessName,
+  PumpLimitEntry,
+  RunSheet,
+  TargetEntry,
+  Tolerance,
+  Tolerances,
+  TubingPiece,
+} from './runsheet/types.ts';
+export { computeSection, type Given, type SectionInput, type SectionState } from './section/section.ts';
+export type { FlowNetwork, FlowRun, RunNetwork } from './solve/flow-network.ts';
 export { solveFlow } from './solve/flow-state.ts';
 export type { JointShares } from './solve/joint-share.ts';
 export { type FoundSettings, type FoundTarget, findSettings } from './solve/targets.ts';
 export type { FlowPart, FlowState } from './solve/types.ts';
 export { type Pace, type SpreadOptions, spreadOf } from './spread/spread.ts';
-export type { Spread } from './spread/types.ts';
+export type { Spread, SpreadOutput } from './spread/types.ts';
 export { readSvg } from './svg/read.ts';
 export type { SvgDrawing } from './svg/types.ts';
 export { VERSION } from './version.ts';

@@ -12,6 +12,7 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
   const drawing: Known<rillcheck.SvgDrawing> = rillcheck.readSvg(svg, 'chip.svg');
   const layout: Known<rillcheck.Layout> = rillcheck.layOut(drawing, 'chip.svg');
   const items: readonly Known<rillcheck.LayoutItem>[] = layout.items;
+  const drawn = items.map(linesIn);
   const draftInput: Known<rillcheck.DraftInput> = { layout, file: 'chip.svg', tool: rillcheck.VERSION };
   const draft: string = rillcheck.draftRunSheet(draftInput);
   const sheet: Known<rillcheck.RunSheet> = rillcheck.parseRunSheet(yaml, 'chip.run.yaml');
@@ -21,7 +22,7 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
     sheet,
     file: 'chip.svg',
   };
-  const assembled = rillcheck.assembleChip(input);
+  const assembled: Known<rillcheck.Assembled> = rillcheck.assembleChip(input);
   const chip: Known<rillcheck.Chip> = assembled.chip;
   const run: Known<rillcheck.Run> = assembled.run;
   const channels: readonly Known<rillcheck.Channel>[] = chip.channels;
@@ -34,17 +35,30 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
   const fluid: Known<rillcheck.Fluid> = run.fluid;
   const mixture: Known<rillcheck.Mixture> = fluid.mixture;
   const faults: readonly Known<rillcheck.ReadingFault>[] = chip.faults;
+  const outlines = faults.filter(
+    (fault): fault is Known<rillcheck.OutlineFault> => fault.kind === 'filled-outline',
+  );
+  const obstacles: readonly Known<rillcheck.Obstacle>[] = chip.obstacles;
+  const leastWall: Known<rillcheck.LeastWall> | null = chip.leastWall;
+  const maxReynolds: Known<rillcheck.Sourced<number>> = limits.maxReynolds;
+  const origin: Known<rillcheck.Origin> = maxReynolds.origin;
 
   const network: Known<rillcheck.Network> = rillcheck.buildNetwork(chip);
   const kinds: readonly Known<rillcheck.NodeKind>[] = rillcheck.NODE_KINDS;
-  const round: readonly number[] = network.trace.near.index?.search(0, 0, 1, 1) ?? [];
-  const flow: Known<rillcheck.FlowState> = rillcheck.solveFlow(network, run);
+  const trace: Known<rillcheck.NetworkTrace> = network.trace;
+  const round: readonly number[] = trace.near.index?.search(0, 0, 1, 1) ?? [];
+  const flowNetwork: Known<rillcheck.FlowNetwork> = network;
+  const flowRun: Known<rillcheck.FlowRun> = run;
+  const flow: Known<rillcheck.FlowState> = rillcheck.solveFlow(flowNetwork, flowRun);
   const parts: readonly Known<rillcheck.FlowPart>[] = flow.parts;
 
   const context: Known<rillcheck.FindingContext> = { chip, run, network, flow };
   const rule: Known<rillcheck.Rule> = {
     names: ['my-own'],
-    run: ({ chip: { file } }) => ({ findings: [], notRun: [{ rule: 'my-own', why: file }] }),
+    run: ({ chip: { file } }): Known<rillcheck.RuleOutcome> => ({
+      findings: [],
+      notRun: [{ rule: 'my-own', why: file }],
+    }),
   };
   const judged: Known<rillcheck.FindingReport> = rillcheck.findAll(context);
   const own: readonly Known<rillcheck.NotRun>[] = rillcheck.findAll(context, [rule]).notRun;
@@ -57,7 +71,8 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
   };
   const analysis: Known<rillcheck.Analysis> = await rillcheck.analyse(input, onStage);
   const shares: Known<rillcheck.JointShares> = analysis.jointShares;
-  const settings: Known<rillcheck.FoundSettings> = rillcheck.findSettings({ network, run });
+  const asRun: Known<rillcheck.RunNetwork> = { network, run };
+  const settings: Known<rillcheck.FoundSettings> = rillcheck.findSettings(asRun);
   const targets: readonly Known<rillcheck.FoundTarget>[] = settings.targets;
   const pumped: Known<rillcheck.Analysis> = await rillcheck.analyse({ ...input, pump: true });
 
@@ -65,7 +80,8 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
   if (tolerances === null) throw new Error('the run sheet of this example has tolerances');
   const draws: Known<rillcheck.SpreadOptions> = { draws: 16, seed: 1 };
   const pace: Known<rillcheck.Pace> = { due: () => false, rest: async () => 'go on' };
-  const spread: Known<rillcheck.Spread> = await rillcheck.spreadOf({ network, run }, tolerances, draws, pace);
+  const spread: Known<rillcheck.Spread> = await rillcheck.spreadOf(asRun, tolerances, draws, pace);
+  const moved: readonly Known<rillcheck.SpreadOutput>[] = spread.outputs;
 
   const computed: Known<rillcheck.CaseInput> = { name: 'seed', ...analysis };
   const reportInput: Known<rillcheck.ReportInput> = {
@@ -96,6 +112,7 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
   const picture: Known<rillcheck.SvgOptions> = { quantity };
   const terminal: Known<rillcheck.TerminalOptions> = { colour: false, columns: 80, quiet: true };
 
+  const given: Known<rillcheck.Given> = { kind: 'flow', flowM3s: 1e-10 };
   const section: Known<rillcheck.SectionInput> = {
     widthM: 5e-4,
     depthM: 5e-5,
@@ -103,9 +120,10 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
     profile: 'rectangle',
     viscosityPaS: 1e-3,
     densityKgM3: 1000,
-    given: { kind: 'flow', flowM3s: 1e-10 },
+    given,
   };
   const duct: Known<rillcheck.SectionState> = rillcheck.computeSection(section);
+  const inDuct: Known<rillcheck.DuctState> = duct;
   const form: Known<rillcheck.DuctForm> = rillcheck.ductForm(5e-4, 5e-5);
 
   void [
@@ -123,13 +141,45 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
     own,
     severities,
   ];
-  void [shares, targets, pumped, items, form, duct];
+  void [shares, targets, pumped, drawn, form, inDuct, moved, outlines, obstacles, leastWall, origin];
+  useEntries(sheet);
   const texts = [draft, json, reaches, segments, rillcheck.svgPicture(one, picture)];
   return [
     rillcheck.terminalSummary(report, terminal).trim(),
     `${channels.length} channels, ${stages.length} stages, ${spread.draws} draws`,
     texts.every((text) => text.length > 100) && pdf.length > 10_000 ? 'all written' : 'something is missing',
   ].join('\n');
+}
+
+function linesIn(item: Known<rillcheck.LayoutItem>): readonly Float64Array[] {
+  switch (item.kind) {
+    case 'stroke': {
+      const stroke: Known<rillcheck.Stroke> = item;
+      const centrelines: readonly Known<rillcheck.Centreline>[] = stroke.centrelines;
+      return centrelines.map(({ points }) => points);
+    }
+    case 'hole': {
+      const hole: Known<rillcheck.Hole> = item;
+      return [Float64Array.of(hole.x, hole.y)];
+    }
+    default: {
+      const rest: Known<rillcheck.Outline> | Known<rillcheck.Ignored> = item;
+      return rest.rings;
+    }
+  }
+}
+
+function useEntries(sheet: Known<rillcheck.RunSheet>): void {
+  const layers: readonly Known<rillcheck.LayerEntry>[] = Object.values(sheet.layers);
+  const ports: readonly Known<rillcheck.PortEntry>[] = Object.values(sheet.ports);
+  const tubing: readonly Known<rillcheck.TubingPiece>[] = ports.flatMap((port) => port.tubing);
+  const channels: readonly Known<rillcheck.ChannelEntry>[] = Object.values(sheet.channels);
+  const pumps: readonly Known<rillcheck.PumpLimitEntry>[] = Object.values(sheet.pumpLimits);
+  const targets: readonly Known<rillcheck.TargetEntry>[] = sheet.targets;
+  const accepted: readonly Known<rillcheck.AcceptEntry>[] = sheet.accept;
+  const process: Known<rillcheck.ProcessName> | null = sheet.process;
+  const depth: Known<rillcheck.Tolerance> | null | undefined = sheet.tolerances?.depth;
+  void [layers, tubing, channels, pumps, targets, accepted, process, depth];
 }
 
 function useRows(
