@@ -8,7 +8,7 @@ import type { RunSheet } from '../runsheet/types.ts';
 import { refuse } from './complain.ts';
 import { CHIP_EDGE_NAME } from './defaults.ts';
 import { smallestRectangle } from './rectangle.ts';
-import { outerRings } from './rings.ts';
+import { circleRing, closedRing, outerRings } from './rings.ts';
 
 /** The chip edge in drawing units, and the drawn items it is made of. */
 export interface DrawnEdge {
@@ -37,22 +37,7 @@ export function findEdge(layout: Layout, sheet: RunSheet | null, file: string): 
   const items = named(layout.items, name);
   if (items.length === 0) {
     if (sheet === null || asked === null) return null;
-    const names = new Set<string>();
-    for (const item of layout.items) if (item.name !== null) names.add(item.name);
-    const near = nearest(asked, names);
-    const hidden = layout.undrawn.find(({ name: other }) => other === asked.trim());
-    if (hidden !== undefined) {
-      refuse(
-        sheet,
-        ['outline'],
-        `outline: ${quote(asked)} is in the drawing but is not drawn: ${hidden.why}`,
-      );
-    }
-    refuse(
-      sheet,
-      ['outline'],
-      `outline: the drawing has no shape ${quote(asked)}${near === null ? '' : `; did you mean ${quote(near)}?`}`,
-    );
+    refuse(sheet, ['outline'], `outline: ${whyMissing(layout, asked)}`);
   }
   const drawn = items.flatMap(ringsOf);
   const outer = new Set(outerRings(drawn.map(({ points }) => points)));
@@ -64,6 +49,15 @@ export function findEdge(layout: Layout, sheet: RunSheet | null, file: string): 
     throw new InputError(file, what);
   }
   return { name, ordinals: new Set(items.map(({ ordinal }) => ordinal)), rings, sides };
+}
+
+function whyMissing({ items, undrawn }: Layout, asked: string): string {
+  const hidden = undrawn.find(({ name }) => name === asked.trim());
+  if (hidden !== undefined) return `${quote(asked)} is in the drawing but is not drawn: ${hidden.why}`;
+  const names = new Set(items.flatMap(({ name }) => name ?? []));
+  const near = nearest(asked, names);
+  const hint = near === null ? '' : `; did you mean ${quote(near)}?`;
+  return `the drawing has no shape ${quote(asked)}${hint}`;
 }
 
 function named(items: readonly LayoutItem[], name: string): readonly LayoutItem[] {
@@ -91,23 +85,20 @@ function ringsOf(item: LayoutItem): readonly EdgeRing[] {
         .filter(({ points }) => points.length >= 6)
         .map(closed);
     case 'hole':
-      return [circleRing(item)];
+      return [roundRing(item)];
     default:
       return item satisfies never;
   }
 }
 
-function circleRing({ x, y, radius }: Hole): EdgeRing {
+function roundRing({ x, y, radius }: Hole): EdgeRing {
   const ellipse = { cx: x, cy: y, ux: radius, uy: 0, vx: 0, vy: radius };
-  const points = new Float64Array(2 * CIRCLE_CORNERS + 2);
-  const curves: Curve[] = [];
   const angleAt = (i: number): number => (2 * Math.PI * i) / CIRCLE_CORNERS;
-  for (let i = 0; i <= CIRCLE_CORNERS; i++) {
-    points[2 * i] = x + radius * Math.cos(angleAt(i % CIRCLE_CORNERS));
-    points[2 * i + 1] = y + radius * Math.sin(angleAt(i % CIRCLE_CORNERS));
-    if (i > 0) curves.push({ kind: 'arc', ellipse, from: angleAt(i - 1), to: angleAt(i) });
-  }
-  return { points, curves };
+  const curves = Array.from(
+    { length: CIRCLE_CORNERS },
+    (_, i): Curve => ({ kind: 'arc', ellipse, from: angleAt(i), to: angleAt(i + 1) }),
+  );
+  return { points: circleRing(x, y, radius, CIRCLE_CORNERS), curves };
 }
 
 /** Closed, or open by less than a hundredth of the way from its first point to its farthest corner. */
@@ -115,31 +106,20 @@ function closes({ points, closed: isClosed }: Centreline): boolean {
   if (points.length < 6) return false;
   if (isClosed) return true;
   const n = points.length;
-  const [x, y] = [points[0]!, points[1]!];
+  const [x, y] = [points[0], points[1]];
   let reach = 0;
-  for (let i = 2; i < n; i += 2) reach = Math.max(reach, Math.hypot(points[i]! - x, points[i + 1]! - y));
-  return Math.hypot(points[n - 2]! - x, points[n - 1]! - y) < 0.01 * reach;
+  for (let i = 2; i < n; i += 2) reach = Math.max(reach, Math.hypot(points[i] - x, points[i + 1] - y));
+  return Math.hypot(points[n - 2] - x, points[n - 1] - y) < 0.01 * reach;
 }
 
 function closed({ points, curves }: EdgeRing): EdgeRing {
-  const n = points.length;
-  if (points[0] === points[n - 2] && points[1] === points[n - 1]) return { points, curves };
-  const ring = new Float64Array(n + 2);
-  ring.set(points);
-  ring[n] = points[0]!;
-  ring[n + 1] = points[1]!;
-  return { points: ring, curves: curves && [...curves, null] };
+  const ring = closedRing(points);
+  return { points: ring, curves: ring === points ? curves : curves && [...curves, null] };
 }
 
 function sidesOf(items: readonly LayoutItem[], rings: readonly EdgeRing[]): readonly [number, number] | null {
   const only = items[0];
   if (items.length === 1 && only?.kind === 'hole') return [2 * only.radius, 2 * only.radius];
-  const points = new Float64Array(rings.reduce((sum, ring) => sum + ring.points.length, 0));
-  let at = 0;
-  for (const ring of rings) {
-    points.set(ring.points, at);
-    at += ring.points.length;
-  }
-  const rectangle = smallestRectangle(points);
+  const rectangle = smallestRectangle(rings.flatMap(({ points }) => [...points]));
   return rectangle === null ? null : [rectangle.longSide, rectangle.shortSide];
 }

@@ -4,11 +4,12 @@
  * A channel is a stroke along its middle. What CAD programs export are fills, or hairlines round what would be etched: read as
  * if they were channels, or passed over, they would give a wrong network without a word.
  */
-import Flatbush from 'flatbush';
+import { Bounds } from '../geometry/bounds.ts';
+import { indexBoxes } from '../geometry/box-index.ts';
 import { addDiscStretch, coveredUpTo } from '../geometry/strip.ts';
 import type { Hole, Ignored, Outline } from '../layout/types.ts';
 import { findHairlines } from './hairlines.ts';
-import { circleRing, indexRings, outerRings, type RingIndex } from './rings.ts';
+import { circleRing, closedRing, indexRings, outerRings } from './rings.ts';
 import { indexStrips, type StripIndex } from './strip-index.ts';
 import type { Channel, Obstacle, OutlineFault, OutlineReason, Port } from './types.ts';
 
@@ -50,23 +51,11 @@ export function readAreas(
 ): AreaReading {
   const hairlines = findHairlines(drawn, ports, slackMm);
   const channels = hairlines.size === 0 ? drawn : drawn.filter((channel) => !hairlines.has(channel));
-  const faults: OutlineFault[] = [...hairlines].map(
-    ([
-      {
-        name,
-        centrelines: [{ points }],
-      },
-      held,
-    ]) => ({
-      kind: 'filled-outline',
-      name,
-      xMm: points[0],
-      yMm: points[1],
-      reason: 'hairline',
-      ports: held.map((port) => port.name),
-      ends: [],
-    }),
-  );
+  const faults = [...hairlines].map(([{ name, centrelines }, held]): OutlineFault => {
+    const [xMm, yMm] = centrelines[0].points;
+    const on = held.map((port) => port.name);
+    return { kind: 'filled-outline', name, xMm, yMm, reason: 'hairline', ports: on, ends: [] };
+  });
   const wells = indexWells(ports, slackMm);
   const shapes = toShapes(areas, unitMm, wells);
   if (shapes.length === 0) return { faults, obstacles: [], channels, counted: [] };
@@ -126,57 +115,54 @@ interface Shape {
   readonly kind: string;
 }
 
+/** What most shapes are. */
+const PLAIN = {
+  filled: true,
+  stroked: true,
+  dataChannel: false,
+  mayBeChannel: true,
+  isPad: false,
+  circle: null,
+};
+
 function toShapes(
   { outlines, unsuitable, outside, ellipses }: DrawnAreas,
   unitMm: number,
   wells: Wells,
 ): Shape[] {
   const toMm = (ring: Float64Array): Float64Array => closedRing(ring).map((value) => value * unitMm);
-  const shapes: Shape[] = outlines.map((outline) => ({
-    ordinal: outline.ordinal,
-    name: outline.name ?? 'unnamed shape',
-    rings: outline.rings.map(toMm),
-    filled: true,
-    stroked: outline.stroked,
-    dataChannel: outline.dataChannel,
-    mayBeChannel: true,
-    isPad: false,
-    circle: null,
-    kind: 'filled outline',
-  }));
-  for (const item of ellipses) {
-    shapes.push({
-      ordinal: item.ordinal,
-      name: item.name ?? 'unnamed ellipse',
-      rings: item.rings.map(toMm),
+  const fills = outlines.map(
+    ({ ordinal, name, rings, stroked, dataChannel }): Shape => ({
+      ...PLAIN,
+      ordinal,
+      name: name ?? 'unnamed shape',
+      // A fill closes what it fills.
+      rings: rings.map(toMm),
+      stroked,
+      dataChannel,
+      kind: 'filled outline',
+    }),
+  );
+  const ovals = ellipses.map(
+    ({ ordinal, name, rings, reason }): Shape => ({
+      ...PLAIN,
+      ordinal,
+      name: name ?? 'unnamed ellipse',
+      rings: rings.map(toMm),
       filled: false,
-      stroked: true,
-      dataChannel: false,
       mayBeChannel: false,
-      isPad: false,
-      circle: null,
-      kind: item.reason,
-    });
-  }
-  for (const circle of unsuitable) shapes.push(circleShape(circle, unitMm, 'circle of no port size'));
-  for (const circle of outside) {
+      kind: reason,
+    }),
+  );
+  const circles = unsuitable.map((circle) => circleShape(circle, unitMm, 'circle of no port size'));
+  const others = outside.map((circle): Shape => {
     const shape = circleShape(circle, unitMm, 'circle outside the ports layer');
     const isPad = wells
       .at(circle.x * unitMm, circle.y * unitMm)
       .some((port) => isConcentric(circle, unitMm, port));
-    shapes.push({ ...shape, mayBeChannel: false, isPad });
-  }
-  return shapes.sort((a, b) => a.ordinal - b.ordinal);
-}
-
-/** A fill closes what it fills. */
-function closedRing(ring: Float64Array): Float64Array {
-  const n = ring.length;
-  if (ring[0] === ring[n - 2] && ring[1] === ring[n - 1]) return ring;
-  const closed = new Float64Array(n + 2);
-  closed.set(ring);
-  closed.set([ring[0], ring[1]], n);
-  return closed;
+    return { ...shape, mayBeChannel: false, isPad };
+  });
+  return [...fills, ...ovals, ...circles, ...others].sort((a, b) => a.ordinal - b.ordinal);
 }
 
 function isConcentric({ x, y }: Hole, unitMm: number, { xMm, yMm, radiusMm }: Port): boolean {
@@ -186,14 +172,13 @@ function isConcentric({ x, y }: Hole, unitMm: number, { xMm, yMm, radiusMm }: Po
 function circleShape(circle: Hole, unitMm: number, kind: string): Shape {
   const [xMm, yMm, radiusMm] = [circle.x * unitMm, circle.y * unitMm, circle.radius * unitMm];
   return {
+    ...PLAIN,
     ordinal: circle.ordinal,
     name: circle.name ?? 'unnamed circle',
     rings: [circleRing(xMm, yMm, radiusMm)],
     filled: circle.filled,
     stroked: circle.stroked,
-    dataChannel: false,
     mayBeChannel: circle.filled,
-    isPad: false,
     circle: { xMm, yMm, radiusMm },
     kind,
   };
@@ -221,12 +206,12 @@ function touchedShapes(
     return { ends: [], ports: [], inWell };
   });
   const index = indexRings(shapes.map(({ rings }) => rings));
+  const shapesAt = (x: number, y: number, reach: number): ReadonlySet<number> =>
+    new Set([...index.groupsWithin(x, y, reach + slackMm), ...index.groupsRound(x, y)]);
   const touchAt = ({ name, stripHalfWidthMm }: Channel, x: number, y: number): void => {
     if (wells.at(x, y).length > 0) return;
-    const near = index.groupsWithin(x, y, stripHalfWidthMm + slackMm);
-    for (const shape of new Set([...near, ...index.groupsRound(x, y)])) {
+    for (const shape of shapesAt(x, y, stripHalfWidthMm))
       touching[shape].ends.push({ channel: name, xMm: x, yMm: y });
-    }
   };
   for (const channel of channels) {
     for (const { points, closed } of channel.centrelines) {
@@ -237,9 +222,7 @@ function touchedShapes(
     }
   }
   for (const { name, xMm, yMm, radiusMm } of ports) {
-    const near = new Set(index.groupsWithin(xMm, yMm, radiusMm + slackMm));
-    for (const shape of index.groupsRound(xMm, yMm)) near.add(shape);
-    for (const shape of near) touching[shape].ports.push(name);
+    for (const shape of shapesAt(xMm, yMm, radiusMm)) touching[shape].ports.push(name);
   }
   return touching;
 }
@@ -252,13 +235,12 @@ interface Wells {
 }
 
 function indexWells(ports: readonly Port[], slackMm: number): Wells {
-  if (ports.length === 0) return { at: () => [], along: () => [] };
-  const index = new Flatbush(ports.length);
-  for (const { xMm, yMm, radiusMm } of ports) {
-    const r = radiusMm + slackMm;
-    index.add(xMm - r, yMm - r, xMm + r, yMm + r);
-  }
-  index.finish();
+  const index = indexBoxes(
+    ports.flatMap(({ xMm, yMm, radiusMm }) => {
+      const r = radiusMm + slackMm;
+      return [xMm - r, yMm - r, xMm + r, yMm + r];
+    }),
+  );
   const along: Wells['along'] = (x1, y1, x2, y2) =>
     index.search(Math.min(x1, x2), Math.min(y1, y2), Math.max(x1, x2), Math.max(y1, y2)).map((i) => ports[i]);
   return {
@@ -275,12 +257,9 @@ function isInsideWell(
   { xMm, yMm, radiusMm }: Port,
   slackMm: number,
 ): boolean {
-  return rings.every((ring) => {
-    for (let i = 0; i < ring.length; i += 2) {
-      if (Math.hypot(ring[i]! - xMm, ring[i + 1]! - yMm) > radiusMm + slackMm) return false;
-    }
-    return true;
-  });
+  return rings.every((ring) =>
+    everyPoint(ring, (x, y) => Math.hypot(x - xMm, y - yMm) <= radiusMm + slackMm),
+  );
 }
 
 /** Whether a shape, its holes filled, holds every centreline and every port's middle; touching its edge is inside. */
@@ -289,44 +268,34 @@ function backgroundTest(
   ports: readonly Port[],
   slackMm: number,
 ): (shape: Shape) => boolean {
-  const points: (readonly [number, number])[] = ports.map(({ xMm, yMm }) => [xMm, yMm]);
-  for (const { centrelines } of channels)
-    for (const line of centrelines)
-      for (let i = 0; i < line.points.length; i += 2) points.push([line.points[i], line.points[i + 1]]);
-  let [left, top, right, bottom] = [Infinity, Infinity, -Infinity, -Infinity];
-  for (const [x, y] of points) {
-    left = Math.min(left, x);
-    right = Math.max(right, x);
-    top = Math.min(top, y);
-    bottom = Math.max(bottom, y);
-  }
+  const lines = channels.flatMap(({ centrelines }) => centrelines.map(({ points }) => points));
+  const places = [...lines, ...ports.map(({ xMm, yMm }) => Float64Array.of(xMm, yMm))];
+  const needed = boundsOf(places);
   return ({ rings, filled }) => {
-    if (!filled || !boxHolds(rings, left, top, right, bottom, slackMm)) return false;
-    const index: RingIndex = indexRings([outerRings(rings)]);
-    return points.every(([x, y]) => index.contains(x, y) || index.groupsWithin(x, y, slackMm).length > 0);
+    if (!filled) return false;
+    const own = boundsOf(rings);
+    const isRound =
+      own.left <= needed.left + slackMm &&
+      own.right >= needed.right - slackMm &&
+      own.top <= needed.top + slackMm &&
+      own.bottom >= needed.bottom - slackMm;
+    if (!isRound) return false;
+    const index = indexRings([outerRings(rings)]);
+    const holds = (x: number, y: number): boolean =>
+      index.contains(x, y) || index.groupsWithin(x, y, slackMm).length > 0;
+    return places.every((points) => everyPoint(points, holds));
   };
 }
 
-function boxHolds(
-  rings: readonly Float64Array[],
-  left: number,
-  top: number,
-  right: number,
-  bottom: number,
-  slackMm: number,
-): boolean {
-  let [minX, minY, maxX, maxY] = [Infinity, Infinity, -Infinity, -Infinity];
-  for (const ring of rings) {
-    for (let i = 0; i < ring.length; i += 2) {
-      minX = Math.min(minX, ring[i]);
-      maxX = Math.max(maxX, ring[i]);
-      minY = Math.min(minY, ring[i + 1]);
-      maxY = Math.max(maxY, ring[i + 1]);
-    }
-  }
-  return (
-    minX <= left + slackMm && maxX >= right - slackMm && minY <= top + slackMm && maxY >= bottom - slackMm
-  );
+function boundsOf(lines: readonly Float64Array[]): Bounds {
+  const bounds = new Bounds();
+  for (const points of lines) bounds.addLine(points);
+  return bounds;
+}
+
+function everyPoint(points: Float64Array, test: (x: number, y: number) => boolean): boolean {
+  for (let i = 0; i < points.length; i += 2) if (!test(points[i], points[i + 1])) return false;
+  return true;
 }
 
 interface Place {
@@ -349,29 +318,15 @@ function whereInStrips(
     const round = strips.channelsRoundDisc(circle.xMm, circle.yMm, circle.radiusMm);
     if (round.length > 0) return { channel: widestOf(round), inside: true };
   }
-  if (isAllEtched(rings, strips, wells, slackMm)) {
-    /** Corners of the shape in each channel. */
-    const corners = new Map<number, number>();
-    for (const ring of rings) {
-      for (let i = 0; i + 3 < ring.length; i += 2) {
-        for (const channel of strips.channelsAt(ring[i], ring[i + 1])) {
-          corners.set(channel, (corners.get(channel) ?? 0) + 1);
-        }
-      }
-    }
-    if (corners.size > 0) {
-      const most = Math.max(...corners.values());
-      const best = [...corners].filter(([, held]) => held === most).map(([channel]) => channel);
-      return { channel: widestOf(best), inside: true };
-    }
+  const corners = isAllEtched(rings, strips, wells, slackMm) ? cornersIn(rings, strips) : null;
+  if (corners !== null && corners.size > 0) {
+    const most = Math.max(...corners.values());
+    const best = [...corners].filter(([, held]) => held === most).map(([channel]) => channel);
+    return { channel: widestOf(best), inside: true };
   }
-  const met = new Set<number>();
-  for (const ring of rings) {
-    for (let i = 0; i + 3 < ring.length; i += 2) {
-      for (const channel of strips.channelsAlong(ring[i], ring[i + 1], ring[i + 2], ring[i + 3]))
-        met.add(channel);
-    }
-  }
+  const met = new Set(
+    rings.flatMap((ring) => sidesOf(ring).flatMap((side) => strips.channelsAlong(...side))),
+  );
   return met.size === 0 ? null : { channel: widestOf([...met]), inside: false };
 
   function widestOf(candidates: readonly number[]): number {
@@ -380,6 +335,24 @@ function whereInStrips(
     );
   }
 }
+
+/** How many corners of a shape lie in each channel. */
+function cornersIn(rings: readonly Float64Array[], strips: StripIndex): ReadonlyMap<number, number> {
+  const corners = new Map<number, number>();
+  for (const [x, y] of rings.flatMap(sidesOf)) {
+    for (const channel of strips.channelsAt(x, y)) corners.set(channel, (corners.get(channel) ?? 0) + 1);
+  }
+  return corners;
+}
+
+/** The straight sides of a ring. */
+function sidesOf(ring: Float64Array): readonly Side[] {
+  const sides: Side[] = [];
+  for (let i = 0; i + 3 < ring.length; i += 2) sides.push([ring[i], ring[i + 1], ring[i + 2], ring[i + 3]]);
+  return sides;
+}
+
+type Side = readonly [x1: number, y1: number, x2: number, y2: number];
 
 /** Looked at in each direction across a shape for material within. */
 const LOOKS = 6;
@@ -391,18 +364,9 @@ function isAllEtched(
   wells: Wells,
   slackMm: number,
 ): boolean {
-  let [left, top, right, bottom] = [Infinity, Infinity, -Infinity, -Infinity];
-  for (const ring of rings) {
-    for (let i = 0; i < ring.length; i += 2) {
-      if (i > 0 && !isEdgeEtched(ring[i - 2], ring[i - 1], ring[i], ring[i + 1], strips, wells, slackMm)) {
-        return false;
-      }
-      left = Math.min(left, ring[i]);
-      right = Math.max(right, ring[i]);
-      top = Math.min(top, ring[i + 1]);
-      bottom = Math.max(bottom, ring[i + 1]);
-    }
-  }
+  const sides = rings.flatMap(sidesOf);
+  if (!sides.every((side) => isEdgeEtched(side, strips, wells, slackMm))) return false;
+  const { left, top, right, bottom } = boundsOf(rings);
   // Edges along a loop of channels may enclose the material that it goes round.
   const area = indexRings([rings]);
   for (let i = 0; i < LOOKS; i++) {
@@ -416,20 +380,13 @@ function isAllEtched(
   return true;
 }
 
-function isEdgeEtched(
-  x1: number,
-  y1: number,
-  x2: number,
-  y2: number,
-  strips: StripIndex,
-  wells: Wells,
-  slackMm: number,
-): boolean {
+function isEdgeEtched(side: Side, strips: StripIndex, wells: Wells, slackMm: number): boolean {
+  const [x1, y1, x2, y2] = side;
   const span = Math.hypot(x2 - x1, y2 - y1);
   if (span === 0) return true;
   const stretches: number[] = [];
-  strips.addStretches(stretches, x1, y1, x2, y2);
-  for (const { xMm, yMm, radiusMm } of wells.along(x1, y1, x2, y2)) {
+  strips.addStretches(stretches, ...side);
+  for (const { xMm, yMm, radiusMm } of wells.along(...side)) {
     const [dx, dy] = [(x2 - x1) / span, (y2 - y1) / span];
     addDiscStretch(stretches, xMm, yMm, radiusMm + slackMm, x1, y1, dx, dy, span);
   }

@@ -1,3 +1,4 @@
+import { remembered } from '../groups.ts';
 import type { Centreline } from '../layout/types.ts';
 import { DEFAULT_HAIRLINE_MM } from './defaults.ts';
 import { indexRings, type RingIndex } from './rings.ts';
@@ -50,12 +51,8 @@ export function findHairlines(
   // Where one line is an outline, so are all that nothing joins.
   if (found.size > 0) for (let line = 0; line < lines.length; line++) if (!joined.has(line)) found.add(line);
   const outlines = new Map<Channel, Port[]>();
-  for (const line of [...found].sort((a, b) => a - b)) {
-    const { channel } = lines[line];
-    const known = outlines.get(channel);
-    if (known === undefined) outlines.set(channel, [...held[line]]);
-    else known.push(...held[line]);
-  }
+  for (const line of [...found].sort((a, b) => a - b))
+    remembered(outlines, lines[line].channel, () => []).push(...held[line]);
   return outlines;
 }
 

@@ -1,3 +1,4 @@
+import { Bounds } from '../geometry/bounds.ts';
 import { formatNumber } from '../runsheet/shown.ts';
 import type { Chip } from './types.ts';
 
@@ -22,17 +23,11 @@ function sizeOf({ edge, widthMm, heightMm, channels, ports }: Chip): {
 } {
   if (edge !== null) return { what: 'the chip edge', sides: edge.sidesMm };
   if (widthMm !== null && heightMm !== null) return { what: 'the drawing', sides: [widthMm, heightMm] };
-  let [left, top, right, bottom] = [Infinity, Infinity, -Infinity, -Infinity];
-  const add = (x: number, y: number, reach: number): void => {
-    left = Math.min(left, x - reach);
-    right = Math.max(right, x + reach);
-    top = Math.min(top, y - reach);
-    bottom = Math.max(bottom, y + reach);
-  };
+  const bounds = new Bounds();
   for (const { centrelines, drawnWidthMm } of channels)
-    for (const { points } of centrelines)
-      for (let i = 0; i < points.length; i += 2) add(points[i], points[i + 1], drawnWidthMm / 2);
-  for (const { xMm, yMm, radiusMm } of ports) add(xMm, yMm, radiusMm);
+    for (const { points } of centrelines) bounds.addLine(points, drawnWidthMm / 2);
+  for (const { xMm, yMm, radiusMm } of ports) bounds.add(xMm, yMm, radiusMm);
+  const { left, top, right, bottom } = bounds;
   const sides: [number, number] = left > right ? [0, 0] : [right - left, bottom - top];
   return { what: 'all that is drawn', sides };
 }

@@ -2,8 +2,9 @@
  * Questions about closed rings, answered by one index over their edges: near constant time each for any drawing
  * that is not one long comb. Even-odd, so a ring inside a ring is a hole.
  */
-import Flatbush from 'flatbush';
 import { orient2d } from 'robust-predicates';
+import { indexBoxes } from '../geometry/box-index.ts';
+import { distanceToSegment } from '../geometry/segment.ts';
 
 export interface RingIndex {
   /** Inside by the even-odd rule; a point on an edge may count either way. */
@@ -21,99 +22,86 @@ export interface RingIndex {
 /** @param groups rings of each group, x0 y0 x1 y1 …; a ring that does not repeat its first point is closed here */
 export function indexRings(groups: readonly (readonly Float64Array[])[]): RingIndex {
   const edges: number[] = [];
+  const boxes: number[] = [];
   const groupOf: number[] = [];
-  for (const [group, rings] of groups.entries())
-    for (const ring of rings) addEdges(ring, group, edges, groupOf);
-  const count = groupOf.length;
-  if (count === 0) return NOTHING;
-  const index = new Flatbush(count);
-  let right = -Infinity;
-  for (let e = 0; e < count; e++) {
-    const [x1, y1, x2, y2] = edgeOf(edges, e);
-    index.add(Math.min(x1, x2), Math.min(y1, y2), Math.max(x1, x2), Math.max(y1, y2));
-    right = Math.max(right, x1, x2);
+  for (const [group, rings] of groups.entries()) {
+    for (const ring of rings) {
+      const n = ring.length / 2;
+      for (let i = 0; i < n; i++) {
+        const j = (i + 1) % n;
+        const [x1, y1, x2, y2] = [ring[2 * i], ring[2 * i + 1], ring[2 * j], ring[2 * j + 1]];
+        if (x1 === x2 && y1 === y2) continue;
+        edges.push(x1, y1, x2, y2);
+        boxes.push(Math.min(x1, x2), Math.min(y1, y2), Math.max(x1, x2), Math.max(y1, y2));
+        groupOf.push(group);
+      }
+    }
   }
-  index.finish();
+  const index = indexBoxes(boxes);
+  const edgesIn = (x1: number, y1: number, x2: number, y2: number): readonly number[] =>
+    index.search(Math.min(x1, x2), Math.min(y1, y2), Math.max(x1, x2), Math.max(y1, y2));
+  /** Groups of those edges of a list for which the test says so. */
+  const groupsOf = (found: readonly number[], test: (...edge: Edge) => boolean): readonly number[] => {
+    const groups = new Set<number>();
+    for (const e of found) if (!groups.has(groupOf[e]) && test(...edgeOf(edges, e))) groups.add(groupOf[e]);
+    return [...groups];
+  };
 
   const oddGroups = (x: number, y: number): Set<number> => {
     const odd = new Set<number>();
-    if (x > right) return odd;
-    for (const e of index.search(x, y, right, y)) {
-      const group = groupOf[e]!;
-      if (!rayMeets(x, y, ...edgeOf(edges, e))) continue;
-      if (!odd.delete(group)) odd.add(group);
+    if (x > index.maxX) return odd;
+    for (const e of index.search(x, y, index.maxX, y)) {
+      if (rayMeets(x, y, ...edgeOf(edges, e)) && !odd.delete(groupOf[e])) odd.add(groupOf[e]);
     }
     return odd;
   };
-  const edgesIn = (x1: number, y1: number, x2: number, y2: number): readonly number[] =>
-    index.search(Math.min(x1, x2), Math.min(y1, y2), Math.max(x1, x2), Math.max(y1, y2));
   return {
     contains: (x, y) => oddGroups(x, y).size % 2 === 1,
     groupsRound: (x, y) => [...oddGroups(x, y)],
-    groupsWithin: (x, y, distance) => {
-      const near = new Set<number>();
-      for (const e of index.search(x - distance, y - distance, x + distance, y + distance)) {
-        const group = groupOf[e]!;
-        if (!near.has(group) && distanceToEdge(x, y, ...edgeOf(edges, e)) <= distance) near.add(group);
-      }
-      return [...near];
-    },
-    groupsCrossed: (x1, y1, x2, y2) => {
-      const crossed = new Set<number>();
-      for (const e of edgesIn(x1, y1, x2, y2)) {
-        const group = groupOf[e]!;
-        if (!crossed.has(group) && segmentsMeet(x1, y1, x2, y2, ...edgeOf(edges, e))) crossed.add(group);
-      }
-      return [...crossed];
-    },
+    groupsWithin: (x, y, distance) =>
+      groupsOf(
+        index.search(x - distance, y - distance, x + distance, y + distance),
+        (...edge) => distanceToSegment(x, y, ...edge) <= distance,
+      ),
+    groupsCrossed: (x1, y1, x2, y2) =>
+      groupsOf(edgesIn(x1, y1, x2, y2), (...edge) => segmentsMeet(x1, y1, x2, y2, ...edge)),
     crosses: (x1, y1, x2, y2) =>
       edgesIn(x1, y1, x2, y2).some((e) => segmentsMeet(x1, y1, x2, y2, ...edgeOf(edges, e))),
   };
 }
 
-/** A ring of 128 corners on a circle, the first one repeated. */
-export function circleRing(x: number, y: number, radius: number): Float64Array {
-  const ring = new Float64Array(2 * CIRCLE_CORNERS + 2);
-  for (let i = 0; i <= CIRCLE_CORNERS; i++) {
-    const angle = (2 * Math.PI * (i % CIRCLE_CORNERS)) / CIRCLE_CORNERS;
+/** The points, with the first one repeated at the end where it is not yet. */
+export function closedRing(points: Float64Array): Float64Array {
+  const n = points.length;
+  if (points[0] === points[n - 2] && points[1] === points[n - 1]) return points;
+  const ring = new Float64Array(n + 2);
+  ring.set(points);
+  ring.set([points[0], points[1]], n);
+  return ring;
+}
+
+/** A ring of so many corners on a circle, the first one repeated. */
+export function circleRing(x: number, y: number, radius: number, corners = 128): Float64Array {
+  const ring = new Float64Array(2 * corners + 2);
+  for (let i = 0; i <= corners; i++) {
+    const angle = (2 * Math.PI * (i % corners)) / corners;
     ring[2 * i] = x + radius * Math.cos(angle);
     ring[2 * i + 1] = y + radius * Math.sin(angle);
   }
   return ring;
 }
 
-const CIRCLE_CORNERS = 128;
-
 /** Rings that lie in no other of the set. */
 export function outerRings(rings: readonly Float64Array[]): readonly Float64Array[] {
   if (rings.length < 2) return rings;
   const index = indexRings(rings.map((ring) => [ring]));
-  return rings.filter((ring, i) => index.groupsRound(ring[0]!, ring[1]!).every((other) => other === i));
+  return rings.filter((ring, i) => index.groupsRound(ring[0], ring[1]).every((other) => other === i));
 }
-
-const NOTHING: RingIndex = {
-  contains: () => false,
-  groupsRound: () => [],
-  groupsWithin: () => [],
-  groupsCrossed: () => [],
-  crosses: () => false,
-};
 
 type Edge = readonly [x1: number, y1: number, x2: number, y2: number];
 
 function edgeOf(edges: readonly number[], e: number): Edge {
-  return [edges[4 * e]!, edges[4 * e + 1]!, edges[4 * e + 2]!, edges[4 * e + 3]!];
-}
-
-function addEdges(ring: Float64Array, group: number, edges: number[], groupOf: number[]): void {
-  const n = ring.length / 2;
-  for (let i = 0; i < n; i++) {
-    const j = (i + 1) % n;
-    const [x1, y1, x2, y2] = [ring[2 * i]!, ring[2 * i + 1]!, ring[2 * j]!, ring[2 * j + 1]!];
-    if (x1 === x2 && y1 === y2) continue;
-    edges.push(x1, y1, x2, y2);
-    groupOf.push(group);
-  }
+  return [edges[4 * e], edges[4 * e + 1], edges[4 * e + 2], edges[4 * e + 3]];
 }
 
 /** Whether the ray from (x, y) towards +x meets the edge; the lower end belongs to it, the upper does not. */
@@ -121,12 +109,6 @@ function rayMeets(x: number, y: number, x1: number, y1: number, x2: number, y2: 
   if (y1 > y === y2 > y) return false;
   const side = orient2d(x1, y1, x2, y2, x, y);
   return y2 > y1 ? side < 0 : side > 0;
-}
-
-function distanceToEdge(x: number, y: number, x1: number, y1: number, x2: number, y2: number): number {
-  const [dx, dy] = [x2 - x1, y2 - y1];
-  const t = Math.min(1, Math.max(0, ((x - x1) * dx + (y - y1) * dy) / (dx * dx + dy * dy)));
-  return Math.hypot(x - x1 - t * dx, y - y1 - t * dy);
 }
 
 function segmentsMeet(

@@ -1,4 +1,5 @@
-import type { Centreline, Hole, Ignored, Layout, LayoutItem, Outline, Stroke } from '../layout/types.ts';
+import { remembered } from '../groups.ts';
+import type { Hole, Ignored, Layout, LayoutItem, Outline, Stroke } from '../layout/types.ts';
 import { isPattern, layerKey, matches } from '../runsheet/names.ts';
 import type { RunSheet } from '../runsheet/types.ts';
 import { CHIP_EDGE_NAME } from './defaults.ts';
@@ -29,7 +30,7 @@ export class Tally {
   /** Sorted by kind, without a prototype. */
   toRecord(): Readonly<Record<string, number>> {
     const record: Record<string, number> = Object.create(null);
-    for (const kind of [...this.#counts.keys()].sort()) record[kind] = this.#counts.get(kind)!;
+    for (const [kind, count] of [...this.#counts].sort(([a], [b]) => (a < b ? -1 : 1))) record[kind] = count;
     return record;
   }
 }
@@ -78,14 +79,12 @@ export function selectItems(
       if (kept === null) leaveOut(item, 'outside the outline', 'it lies outside the outline');
       else if (kept.kind === 'stroke') strokes.push(kept);
       else if (kept.kind === 'hole') holes.push(kept);
-      else {
-        const isFilled = kept.kind === 'outline';
-        note(
-          kept,
-          isFilled ? 'it is filled, and only a stroke is a centreline' : 'it is an ellipse that is not round',
-        );
-        if (isFilled) outlines.push(kept);
-        else ellipses.push(kept);
+      else if (kept.kind === 'outline') {
+        note(kept, 'it is filled, and only a stroke is a centreline');
+        outlines.push(kept);
+      } else {
+        note(kept, 'it is an ellipse that is not round');
+        ellipses.push(kept);
       }
     }
   }
@@ -98,13 +97,8 @@ function ignoreTest(ignore: readonly string[]): (item: LayoutItem) => boolean {
   const element = nameTest(ignore);
   const group = nameTest(ignore.map(layerKey));
   const byGroups = new Map<readonly string[], boolean>();
-  const groupsIgnored = (groups: readonly string[]): boolean => {
-    const known = byGroups.get(groups);
-    if (known !== undefined) return known;
-    const answer = groups.some((name) => group(layerKey(name)));
-    byGroups.set(groups, answer);
-    return answer;
-  };
+  const groupsIgnored = (groups: readonly string[]): boolean =>
+    remembered(byGroups, groups, () => groups.some((name) => group(layerKey(name))));
   return (item) => (item.name !== null && element(item.name)) || groupsIgnored(item.groups);
 }
 
@@ -132,7 +126,7 @@ type Read = Stroke | Hole | Outline | Ignored;
 function partInside(item: Read, rings: RingIndex): Read | null {
   switch (item.kind) {
     case 'stroke': {
-      const centrelines = item.centrelines.filter((line) => lineMeets(line, rings));
+      const centrelines = item.centrelines.filter(({ points }) => pointsMeet(points, rings));
       if (centrelines.length === item.centrelines.length) return item;
       return centrelines.length === 0 ? null : { ...item, centrelines };
     }
@@ -149,15 +143,11 @@ function partInside(item: Read, rings: RingIndex): Read | null {
   }
 }
 
-function lineMeets({ points }: Centreline, rings: RingIndex): boolean {
-  return pointsMeet(points, rings);
-}
-
 function pointsMeet(points: Float64Array, rings: RingIndex): boolean {
   // Most lines have their first point inside; a line with no point inside may still cross.
-  for (let i = 0; i < points.length; i += 2) if (rings.contains(points[i]!, points[i + 1]!)) return true;
+  for (let i = 0; i < points.length; i += 2) if (rings.contains(points[i], points[i + 1])) return true;
   for (let i = 2; i < points.length; i += 2) {
-    if (rings.crosses(points[i - 2]!, points[i - 1]!, points[i]!, points[i + 1]!)) return true;
+    if (rings.crosses(points[i - 2], points[i - 1], points[i], points[i + 1])) return true;
   }
   return false;
 }

@@ -1,4 +1,5 @@
-import Flatbush from 'flatbush';
+import { indexBoxes } from '../geometry/box-index.ts';
+import { pieceBoxes } from '../geometry/near.ts';
 import { toPieces } from '../geometry/pieces.ts';
 import { segmentDistance } from '../geometry/segment.ts';
 import { addStripStretches, isInPieceStrip } from '../geometry/strip.ts';
@@ -19,29 +20,18 @@ export interface StripIndex {
 /** One index over all straight pieces; each question costs about the logarithm of their number. */
 export function indexStrips(channels: readonly Channel[], slackMm: number): StripIndex {
   const pieces = toPieces(channels);
-  const index = new Flatbush(Math.max(1, pieces.count));
-  for (let i = 0; i < pieces.count; i++) {
-    const reach = pieces.half[i] + slackMm;
-    index.add(
-      Math.min(pieces.x1[i], pieces.x2[i]) - reach,
-      Math.min(pieces.y1[i], pieces.y2[i]) - reach,
-      Math.max(pieces.x1[i], pieces.x2[i]) + reach,
-      Math.max(pieces.y1[i], pieces.y2[i]) + reach,
-    );
-  }
-  if (pieces.count === 0) index.add(0, 0, 0, 0);
-  index.finish();
-  const search = (x1: number, y1: number, x2: number, y2: number): readonly number[] =>
-    pieces.count === 0 ? [] : index.search(x1, y1, x2, y2);
+  const index = indexBoxes(pieceBoxes(pieces, (i) => pieces.half[i] + slackMm));
+  const piecesAlong = (x1: number, y1: number, x2: number, y2: number): readonly number[] =>
+    index.search(Math.min(x1, x2), Math.min(y1, y2), Math.max(x1, x2), Math.max(y1, y2));
   const channelsOf = (found: readonly number[]): readonly number[] => [
     ...new Set(found.map((i) => pieces.channel[i])),
   ];
   return {
     channelsAt: (x, y) =>
-      channelsOf(search(x, y, x, y).filter((i) => isInPieceStrip(pieces, i, x, y, slackMm, null))),
+      channelsOf(index.search(x, y, x, y).filter((i) => isInPieceStrip(pieces, i, x, y, slackMm, null))),
     channelsRoundDisc: (x, y, radius) =>
       channelsOf(
-        search(x, y, x, y).filter((i) => {
+        index.search(x, y, x, y).filter((i) => {
           const length = pieces.length[i];
           const ux = (pieces.x2[i] - pieces.x1[i]) / length;
           const uy = (pieces.y2[i] - pieces.y1[i]) / length;
@@ -51,24 +41,14 @@ export function indexStrips(channels: readonly Channel[], slackMm: number): Stri
           return Math.abs(across) <= pieces.half[i] + room && along >= -room && along <= length + room;
         }),
       ),
-    addStretches: (into, x1, y1, x2, y2) => {
-      const box = [Math.min(x1, x2), Math.min(y1, y2), Math.max(x1, x2), Math.max(y1, y2)] as const;
-      for (const i of search(...box)) addStripStretches(into, pieces, i, x1, y1, x2, y2, slackMm, null);
+    addStretches: (into, ...line) => {
+      for (const i of piecesAlong(...line)) addStripStretches(into, pieces, i, ...line, slackMm, null);
     },
-    channelsAlong: (x1, y1, x2, y2) =>
+    channelsAlong: (...line) =>
       channelsOf(
-        search(Math.min(x1, x2), Math.min(y1, y2), Math.max(x1, x2), Math.max(y1, y2)).filter((i) => {
-          const distance = segmentDistance(
-            x1,
-            y1,
-            x2,
-            y2,
-            pieces.x1[i],
-            pieces.y1[i],
-            pieces.x2[i],
-            pieces.y2[i],
-          );
-          return distance < pieces.half[i] - slackMm;
+        piecesAlong(...line).filter((i) => {
+          const { x1, y1, x2, y2, half } = pieces;
+          return segmentDistance(...line, x1[i], y1[i], x2[i], y2[i]) < half[i] - slackMm;
         }),
       ),
   };

@@ -1,4 +1,4 @@
-import { nearestParameter } from '../geometry/segment.ts';
+import { crossingParameter, nearestParameter } from '../geometry/segment.ts';
 
 /** Two points, one on each of two shapes, and how far they lie apart (mm). */
 export interface Closest {
@@ -20,17 +20,11 @@ export function closestPoints(one: Line, two: Line): Closest {
   const uy = by - ay;
   const vx = dx - cx;
   const vy = dy - cy;
-  const cross = ux * vy - uy * vx;
-  if (cross !== 0) {
-    const wx = cx - ax;
-    const wy = cy - ay;
-    const s = (wx * vy - wy * vx) / cross;
-    const t = (wx * uy - wy * ux) / cross;
-    if (s >= 0 && s <= 1 && t >= 0 && t <= 1) {
-      const x = ax + s * ux;
-      const y = ay + s * uy;
-      return { distanceMm: 0, x1: x, y1: y, x2: x, y2: y };
-    }
+  const s = crossingParameter(...one, ...two);
+  if (s >= 0) {
+    const x = ax + s * ux;
+    const y = ay + s * uy;
+    return { distanceMm: 0, x1: x, y1: y, x2: x, y2: y };
   }
   // Not crossing: the nearest place is at one of the four ends.
   const atA = nearestParameter(ax, ay, cx, cy, dx, dy);

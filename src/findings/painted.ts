@@ -2,7 +2,7 @@ import type { Chip } from '../chip/types.ts';
 import { FINE_MM, finePieces } from '../geometry/curve.ts';
 import { endsAtVertex, type Pieces, startsAtVertex } from '../geometry/pieces.ts';
 import { ROUND, type Rounding, turnOf } from '../geometry/rounding.ts';
-import { isNextToCurvedEnd, roundingAtEnd, roundingAtStart } from '../geometry/strip.ts';
+import { isNextToCurvedEnd, roundingAt } from '../geometry/strip.ts';
 import { type Closest, closestPoints, type Line, nearer } from './closest.ts';
 
 /**
@@ -239,7 +239,7 @@ function areaOf(corners: readonly (readonly [number, number])[]): Part {
 
 /** How the strip of a piece goes on at its two ends. */
 function sectorsOf(pieces: Pieces, i: number): readonly (Rounding | null)[] {
-  return [roundingAtStart(pieces, i, null, 0), roundingAtEnd(pieces, i, null, 0)];
+  return [roundingAt(pieces, i, -1, null, 0), roundingAt(pieces, i, 1, null, 0)];
 }
 
 function isSector(rounding: Rounding | null): boolean {

@@ -1,5 +1,6 @@
-import Flatbush from 'flatbush';
 import { InputError } from '../errors.ts';
+import { sidesByNode } from '../groups.ts';
+import { type BoxIndex, indexBoxes } from './box-index.ts';
 import type { Pieces } from './pieces.ts';
 import { segmentDistance } from './segment.ts';
 
@@ -8,25 +9,6 @@ export const MAX_NEAR_PAIRS = 20_000_000;
 
 /** Stretches of one centreline that come nearer than this are looked at as possible meetings however close along it. */
 const TOUCH_MM = 0.001;
-
-/** What is asked of an index of boxes. Flatbush answers; its own type stays inside, since published types name no package. */
-export interface BoxIndex {
-  /** Round all boxes. */
-  readonly minX: number;
-  readonly minY: number;
-  readonly maxX: number;
-  readonly maxY: number;
-  /** Numbers of the boxes that touch a rectangle, of those that `keep` lets through. */
-  search(minX: number, minY: number, maxX: number, maxY: number, keep?: (index: number) => boolean): number[];
-  /** Numbers of the boxes nearest to a point, the nearest first, of those that `keep` lets through. */
-  neighbors(
-    x: number,
-    y: number,
-    maxResults?: number,
-    maxDistance?: number,
-    keep?: (index: number) => boolean,
-  ): number[];
-}
 
 /** The one spatial index over all pieces, and the one list of pairs of pieces that come near each other. */
 export interface Nearness {
@@ -65,28 +47,20 @@ export function findNearPairs(
       `the drawing has ${n} straight segments; the limit is ${MAX_SEGMENTS} (segment limit): draw fewer or coarser curves, or split the layout`,
     );
   }
-  if (n === 0) return emptyNearness(pieces, withinMm);
-  const minX = new Float64Array(n);
-  const minY = new Float64Array(n);
-  const maxX = new Float64Array(n);
-  const maxY = new Float64Array(n);
-  const index = new Flatbush(n);
-  for (let i = 0; i < n; i++) {
-    const margin = pieces.half[i] * capFactor(i) + pieces.bulge[i];
-    minX[i] = Math.min(pieces.x1[i], pieces.x2[i]) - margin;
-    minY[i] = Math.min(pieces.y1[i], pieces.y2[i]) - margin;
-    maxX[i] = Math.max(pieces.x1[i], pieces.x2[i]) + margin;
-    maxY[i] = Math.max(pieces.y1[i], pieces.y2[i]) + margin;
-    index.add(minX[i], minY[i], maxX[i], maxY[i]);
-  }
-  index.finish();
+  const box = pieceBoxes(pieces, (i) => pieces.half[i] * capFactor(i) + pieces.bulge[i]);
+  const index = indexBoxes(box);
 
-  let pairA = new Int32Array(Math.max(64, 2 * n));
-  let pairB = new Int32Array(pairA.length);
-  let pairDistance = new Float64Array(pairA.length);
-  let pairCount = 0;
+  const pairA: number[] = [];
+  const pairB: number[] = [];
+  const pairDistance: number[] = [];
   for (let i = 0; i < n; i++) {
-    const near = index.search(minX[i] - withinMm, minY[i] - withinMm, maxX[i] + withinMm, maxY[i] + withinMm);
+    const b = 4 * i;
+    const near = index.search(
+      box[b] - withinMm,
+      box[b + 1] - withinMm,
+      box[b + 2] + withinMm,
+      box[b + 3] + withinMm,
+    );
     for (const j of near) {
       if (j <= i || pieces.plane[j] !== pieces.plane[i] || areConsecutive(pieces, i, j)) continue;
       const distance = segmentDistance(
@@ -102,36 +76,45 @@ export function findNearPairs(
       const strips = pieces.half[i] * capFactor(i) + pieces.half[j] * capFactor(j);
       if (distance > strips + withinMm + pieces.bulge[i] + pieces.bulge[j]) continue;
       if (isOwnBend(pieces, i, j, distance)) continue;
-      if (pairCount === pairA.length) {
-        if (pairCount >= MAX_NEAR_PAIRS) {
-          throw new InputError(
-            where,
-            `more than ${MAX_NEAR_PAIRS} pairs of segments lie close together (near-pair limit): the drawing repeats or piles up its strokes; remove the copies`,
-          );
-        }
-        const size = Math.min(MAX_NEAR_PAIRS, 2 * pairCount);
-        pairA = grown(pairA, new Int32Array(size));
-        pairB = grown(pairB, new Int32Array(size));
-        pairDistance = grown(pairDistance, new Float64Array(size));
+      if (pairA.length === MAX_NEAR_PAIRS) {
+        throw new InputError(
+          where,
+          `more than ${MAX_NEAR_PAIRS} pairs of segments lie close together (near-pair limit): the drawing repeats or piles up its strokes; remove the copies`,
+        );
       }
-      pairA[pairCount] = i;
-      pairB[pairCount] = j;
-      pairDistance[pairCount] = distance;
-      pairCount++;
+      pairA.push(i);
+      pairB.push(j);
+      pairDistance.push(distance);
     }
   }
-  pairA = pairA.subarray(0, pairCount);
-  pairB = pairB.subarray(0, pairCount);
+  const columns = { pairA: new Int32Array(pairA), pairB: new Int32Array(pairB) };
+  const { first: firstPair, member: side } = sidesByNode(n, columns.pairA, columns.pairB);
   return {
     pieces,
-    index,
+    index: n === 0 ? null : index,
     withinMm,
-    pairCount,
-    pairA,
-    pairB,
-    pairDistance: pairDistance.subarray(0, pairCount),
-    ...pairsByPiece(n, pairA, pairB),
+    pairCount: pairA.length,
+    ...columns,
+    pairDistance: new Float64Array(pairDistance),
+    firstPair,
+    pairOf: side.map((s) => s >> 1),
   };
+}
+
+/** Boxes of pieces, minX minY maxX maxY of each, wider by a margin on every side. */
+export function pieceBoxes(
+  { count, x1, y1, x2, y2 }: Pieces,
+  marginOf: (piece: number) => number,
+): Float64Array {
+  const box = new Float64Array(4 * count);
+  for (let i = 0, b = 0; i < count; i++) {
+    const margin = marginOf(i);
+    box[b++] = Math.min(x1[i], x2[i]) - margin;
+    box[b++] = Math.min(y1[i], y2[i]) - margin;
+    box[b++] = Math.max(x1[i], x2[i]) + margin;
+    box[b++] = Math.max(y1[i], y2[i]) + margin;
+  }
+  return box;
 }
 
 function areConsecutive(pieces: Pieces, i: number, j: number): boolean {
@@ -151,40 +134,4 @@ function isOwnBend(pieces: Pieces, i: number, j: number, distance: number): bool
   if (pieces.centrelineClosed[c] === 0) return false;
   const between = pieces.start[j] - pieces.start[i] - pieces.length[i];
   return pieces.centrelineLength[c] - between <= twoWidths;
-}
-
-function pairsByPiece(n: number, pairA: Int32Array, pairB: Int32Array) {
-  const firstPair = new Int32Array(n + 1);
-  for (let k = 0; k < pairA.length; k++) {
-    firstPair[pairA[k] + 1]++;
-    firstPair[pairB[k] + 1]++;
-  }
-  for (let i = 0; i < n; i++) firstPair[i + 1] += firstPair[i];
-  const fill = firstPair.slice(0, n);
-  const pairOf = new Int32Array(2 * pairA.length);
-  for (let k = 0; k < pairA.length; k++) {
-    pairOf[fill[pairA[k]]++] = k;
-    pairOf[fill[pairB[k]]++] = k;
-  }
-  return { firstPair, pairOf };
-}
-
-function grown<T extends Int32Array | Float64Array>(from: T, to: T): T {
-  to.set(from);
-  return to;
-}
-
-function emptyNearness(pieces: Pieces, withinMm: number): Nearness {
-  const none = new Int32Array(0);
-  return {
-    pieces,
-    index: null,
-    withinMm,
-    pairCount: 0,
-    pairA: none,
-    pairB: none,
-    pairDistance: new Float64Array(0),
-    firstPair: new Int32Array(1),
-    pairOf: none,
-  };
 }

@@ -1,7 +1,7 @@
 import type { Pieces } from './pieces.ts';
 import { ROUND, type Rounding, turnOf } from './rounding.ts';
 import { distanceToSegment } from './segment.ts';
-import { roundingAtEnd, roundingAtStart } from './strip.ts';
+import { roundingAt } from './strip.ts';
 
 /**
  * Outlines of pieces of strips, and what they have in common. The strip of one straight piece (a rectangle, with a round
@@ -35,8 +35,8 @@ export function pieceOutline(pieces: Pieces, piece: number, growMm: number, roun
   const uy = (by - ay) / pieces.length[piece];
   const outline: number[] = [];
   const sagMm = rounds === 'fine' ? ARC_MM : Math.max(ARC_MM, COARSE_SHARE * half);
-  addEnd(outline, bx, by, ux, uy, half, roundingAtEnd(pieces, piece, null, growMm), growMm, sagMm);
-  addEnd(outline, ax, ay, -ux, -uy, half, roundingAtStart(pieces, piece, null, growMm), growMm, sagMm);
+  addEnd(outline, bx, by, ux, uy, half, roundingAt(pieces, piece, 1, null, growMm), growMm, sagMm);
+  addEnd(outline, ax, ay, -ux, -uy, half, roundingAt(pieces, piece, -1, null, growMm), growMm, sagMm);
   return outline;
 }
 

@@ -4,40 +4,49 @@ import { type Curve, departure, directionAtEnd, FINE_MM } from './curve.ts';
  * Every centreline of every channel, and every straight piece of them, as columns (mm, y down).
  * Position on a centreline is the length s of its pieces from the first drawn point: within 1e-4 of the curve's length.
  */
-export interface Pieces {
-  readonly centrelineCount: number;
-  /** Channel of each centreline. */
-  readonly centrelineChannel: Int32Array;
-  readonly centrelineClosed: Uint8Array;
-  /** Drawn length of each centreline. */
-  readonly centrelineLength: Float64Array;
-  /** Unit direction out of the centreline at its start (2c) and its last point (2c + 1): a curve's own, not its chord's. */
-  readonly outX: Float64Array;
-  readonly outY: Float64Array;
-  /** Pieces of centreline c are firstPiece[c] … firstPiece[c + 1] − 1, in drawn order. Length centrelineCount + 1. */
-  readonly firstPiece: Int32Array;
-
-  readonly count: number;
-  readonly x1: Float64Array;
-  readonly y1: Float64Array;
-  readonly x2: Float64Array;
-  readonly y2: Float64Array;
-  readonly length: Float64Array;
-  /** Arc length at the piece's first point. */
-  readonly start: Float64Array;
-  /** Half the width of the strip. */
-  readonly half: Float64Array;
-  /** Radius of the curve the piece was cut from, 0 for a straight one. */
-  readonly bendRadius: Float64Array;
-  /** How far its curve lies from the piece, at most; 0 for a straight one. Above FINE_MM only where nothing is near. */
-  readonly bulge: Float64Array;
-  /** The curve of each piece whose bulge is above FINE_MM. */
+export interface Pieces extends Readonly<Omit<PieceColumns, 'curves'>> {
   readonly curves: ReadonlyMap<number, Curve>;
-  /** The same number for pieces that one chord was cut into (fine-cuts.ts): what lies between them is no drawn vertex. */
-  readonly chord: Int32Array;
-  readonly centreline: Int32Array;
-  readonly channel: Int32Array;
-  readonly plane: Int32Array;
+}
+
+type PieceColumns = ReturnType<typeof emptyPieces>;
+
+/** Columns of the right length, to be filled. */
+export function emptyPieces(centrelineCount: number, count: number) {
+  return {
+    centrelineCount,
+    /** Channel of each centreline. */
+    centrelineChannel: new Int32Array(centrelineCount),
+    centrelineClosed: new Uint8Array(centrelineCount),
+    /** Drawn length of each centreline. */
+    centrelineLength: new Float64Array(centrelineCount),
+    /** Unit direction out of the centreline at its start (2c) and its last point (2c + 1): a curve's own, not its chord's. */
+    outX: new Float64Array(2 * centrelineCount),
+    outY: new Float64Array(2 * centrelineCount),
+    /** Pieces of centreline c are firstPiece[c] … firstPiece[c + 1] − 1, in drawn order. Length centrelineCount + 1. */
+    firstPiece: new Int32Array(centrelineCount + 1),
+
+    count,
+    x1: new Float64Array(count),
+    y1: new Float64Array(count),
+    x2: new Float64Array(count),
+    y2: new Float64Array(count),
+    length: new Float64Array(count),
+    /** Arc length at the piece's first point. */
+    start: new Float64Array(count),
+    /** Half the width of the strip. */
+    half: new Float64Array(count),
+    /** Radius of the curve the piece was cut from, 0 for a straight one. */
+    bendRadius: new Float64Array(count),
+    /** How far its curve lies from the piece, at most; 0 for a straight one. Above FINE_MM only where nothing is near. */
+    bulge: new Float64Array(count),
+    /** The curve of each piece whose bulge is above FINE_MM. */
+    curves: new Map<number, Curve>(),
+    /** The same number for pieces that one chord was cut into (fine-cuts.ts): what lies between them is no drawn vertex. */
+    chord: new Int32Array(count),
+    centreline: new Int32Array(count),
+    channel: new Int32Array(count),
+    plane: new Int32Array(count),
+  };
 }
 
 /** What pieces are made of: a channel's centrelines (mm), how far its strip reaches to either side, and its plane. */
@@ -95,37 +104,9 @@ export function toPieces(channels: readonly StripSource[]): Pieces {
   return pieces;
 }
 
-/** Columns of the right length, to be filled. */
-export function emptyPieces(centrelineCount: number, count: number) {
-  return {
-    centrelineCount,
-    centrelineChannel: new Int32Array(centrelineCount),
-    centrelineClosed: new Uint8Array(centrelineCount),
-    centrelineLength: new Float64Array(centrelineCount),
-    outX: new Float64Array(2 * centrelineCount),
-    outY: new Float64Array(2 * centrelineCount),
-    firstPiece: new Int32Array(centrelineCount + 1),
-    count,
-    x1: new Float64Array(count),
-    y1: new Float64Array(count),
-    x2: new Float64Array(count),
-    y2: new Float64Array(count),
-    length: new Float64Array(count),
-    start: new Float64Array(count),
-    half: new Float64Array(count),
-    bendRadius: new Float64Array(count),
-    bulge: new Float64Array(count),
-    curves: new Map<number, Curve>(),
-    chord: new Int32Array(count),
-    centreline: new Int32Array(count),
-    channel: new Int32Array(count),
-    plane: new Int32Array(count),
-  };
-}
-
 /** Where piece i runs, and that it begins at position `start` of its centreline. */
 export function setPlace(
-  pieces: ReturnType<typeof emptyPieces>,
+  pieces: PieceColumns,
   i: number,
   x1: number,
   y1: number,
@@ -142,7 +123,7 @@ export function setPlace(
 }
 
 function setOut(
-  pieces: ReturnType<typeof emptyPieces>,
+  pieces: PieceColumns,
   c: number,
   last: number,
   curves: readonly (Curve | null)[] | null,

@@ -33,10 +33,8 @@ export function distanceToSegment(
   return Math.hypot(px - (ax + t * (bx - ax)), py - (ay + t * (by - ay)));
 }
 
-/**
- * Distance between the segments a→b and c→d: 0 where they cross, else the least of the four end-to-segment distances.
- */
-export function segmentDistance(
+/** Parameter 0…1 on the segment a→b of the point where c→d crosses it; NaN where none does, or both are parallel. */
+export function crossingParameter(
   ax: number,
   ay: number,
   bx: number,
@@ -51,13 +49,28 @@ export function segmentDistance(
   const vx = dx - cx;
   const vy = dy - cy;
   const cross = ux * vy - uy * vx;
-  if (cross !== 0) {
-    const wx = cx - ax;
-    const wy = cy - ay;
-    const s = (wx * vy - wy * vx) / cross;
-    const t = (wx * uy - wy * ux) / cross;
-    if (s >= 0 && s <= 1 && t >= 0 && t <= 1) return 0;
-  }
+  if (cross === 0) return Number.NaN;
+  const wx = cx - ax;
+  const wy = cy - ay;
+  const s = (wx * vy - wy * vx) / cross;
+  const t = (wx * uy - wy * ux) / cross;
+  return s >= 0 && s <= 1 && t >= 0 && t <= 1 ? s : Number.NaN;
+}
+
+/**
+ * Distance between the segments a→b and c→d: 0 where they cross, else the least of the four end-to-segment distances.
+ */
+export function segmentDistance(
+  ax: number,
+  ay: number,
+  bx: number,
+  by: number,
+  cx: number,
+  cy: number,
+  dx: number,
+  dy: number,
+): number {
+  if (crossingParameter(ax, ay, bx, by, cx, cy, dx, dy) >= 0) return 0;
   return Math.min(
     distanceToSegment(ax, ay, cx, cy, dx, dy),
     distanceToSegment(bx, by, cx, cy, dx, dy),

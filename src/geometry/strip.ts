@@ -41,9 +41,9 @@ export function isInPieceStrip(
     if ((along < 0 ? startOut : endOut) !== null) return false;
   } else if (Math.abs(across) <= half && along >= -slackMm && along <= length + slackMm) return true;
   if (along < 0)
-    return isInRound(roundingAtStart(pieces, piece, ends, slackMm), x - ax, y - ay, half, slackMm);
+    return isInRound(roundingAt(pieces, piece, -1, ends, slackMm), x - ax, y - ay, half, slackMm);
   if (along > length)
-    return isInRound(roundingAtEnd(pieces, piece, ends, slackMm), x - bx, y - by, half, slackMm);
+    return isInRound(roundingAt(pieces, piece, 1, ends, slackMm), x - bx, y - by, half, slackMm);
   return false;
 }
 
@@ -79,8 +79,8 @@ export function addStripStretches(
     length: pieces.length[piece],
     half: pieces.half[piece] + growMm,
     growMm,
-    atStart: roundingAtStart(pieces, piece, ends, slackMm, keptFrom, keptTo),
-    atEnd: roundingAtEnd(pieces, piece, ends, slackMm, keptFrom, keptTo),
+    atStart: roundingAt(pieces, piece, -1, ends, slackMm, keptFrom, keptTo),
+    atEnd: roundingAt(pieces, piece, 1, ends, slackMm, keptFrom, keptTo),
     ...(pieces.bulge[piece] > 0 ? cutEnds(pieces, piece, ends) : STRAIGHT),
   };
   addShapeStretches(into, shape, ax, ay, bx, by, slackMm);
@@ -99,25 +99,18 @@ export const STRAIGHT: CutEnds = { startOut: null, endOut: null };
  * place where the curve was only cut would reach beyond the end.
  */
 function cutEnds(pieces: Pieces, piece: number, ends: StripEnds | null): CutEnds {
-  const { outX, outY } = pieces;
-  const end = 2 * pieces.centreline[piece];
   const isMitred = isNextToCurvedEnd(pieces, piece);
-  return {
-    startOut: startsAtVertex(pieces, piece)
-      ? mitre(pieces, piece, isMitred ? neighbourPiece(pieces, piece, -1) : -1, -1)
-      : isRoundAt(pieces, piece, ends, 0)
-        ? null
-        : [outX[end], outY[end]],
-    endOut: endsAtVertex(pieces, piece)
-      ? mitre(pieces, piece, isMitred ? neighbourPiece(pieces, piece, 1) : -1, 1)
-      : isRoundAt(pieces, piece, ends, 1)
-        ? null
-        : [outX[end + 1], outY[end + 1]],
+  const outAt = (step: 1 | -1): readonly [number, number] | null => {
+    if (isVertexAt(pieces, piece, step)) return isMitred ? mitre(pieces, piece, step) : null;
+    const end = endAt(pieces, piece, step);
+    return ends?.seam[end] === 1 ? null : [pieces.outX[end], pieces.outY[end]];
   };
+  return { startOut: outAt(-1), endOut: outAt(1) };
 }
 
 /** The direction half-way between two pieces that go on smoothly in each other. */
-function mitre(pieces: Pieces, piece: number, next: number, sign: 1 | -1): readonly [number, number] | null {
+function mitre(pieces: Pieces, piece: number, step: 1 | -1): readonly [number, number] | null {
+  const next = neighbourPiece(pieces, piece, step);
   if (next < 0 || !goesOnSmoothly(pieces, piece, next) || pieces.bendRadius[next] <= pieces.half[next])
     return null;
   const x =
@@ -126,7 +119,7 @@ function mitre(pieces: Pieces, piece: number, next: number, sign: 1 | -1): reado
   const y =
     (pieces.y2[piece] - pieces.y1[piece]) / pieces.length[piece] +
     (pieces.y2[next] - pieces.y1[next]) / pieces.length[next];
-  const length = Math.hypot(x, y) * sign;
+  const length = Math.hypot(x, y) * step;
   return [x / length, y / length];
 }
 
@@ -272,32 +265,29 @@ export function coveredUpTo(stretches: readonly number[], from: number, slackMm:
 /** Far below any drawn length, far above rounding: gaps of this size between parts of one strip are no gaps. */
 const TINY_MM = 1e-9;
 
-/** How the strip goes on beyond the first point of a piece; null where it ends square. `keptFrom` … `keptTo` is what of the centreline is kept. */
-export function roundingAtStart(
+/**
+ * How the strip goes on beyond the first (step −1) or last point (1) of a piece; null where it ends square. `keptFrom` …
+ * `keptTo` is what of the centreline is kept.
+ */
+export function roundingAt(
   pieces: Pieces,
   piece: number,
+  step: 1 | -1,
   ends: StripEnds | null,
   slackMm: number,
   keptFrom = 0,
   keptTo = pieces.centrelineLength[pieces.centreline[piece]],
 ): Rounding | null {
-  if (!startsAtVertex(pieces, piece))
-    return roundingAtSeam(pieces, 2 * pieces.centreline[piece], ends, slackMm);
-  return roundingAtVertex(pieces, piece, -1, keptFrom, keptTo);
+  if (isVertexAt(pieces, piece, step)) return roundingAtVertex(pieces, piece, step, keptFrom, keptTo);
+  return roundingAtSeam(pieces, endAt(pieces, piece, step), ends, slackMm);
 }
 
-/** The same beyond its last point. */
-export function roundingAtEnd(
-  pieces: Pieces,
-  piece: number,
-  ends: StripEnds | null,
-  slackMm: number,
-  keptFrom = 0,
-  keptTo = pieces.centrelineLength[pieces.centreline[piece]],
-): Rounding | null {
-  if (!endsAtVertex(pieces, piece))
-    return roundingAtSeam(pieces, 2 * pieces.centreline[piece] + 1, ends, slackMm);
-  return roundingAtVertex(pieces, piece, 1, keptFrom, keptTo);
+function isVertexAt(pieces: Pieces, piece: number, step: 1 | -1): boolean {
+  return step === -1 ? startsAtVertex(pieces, piece) : endsAtVertex(pieces, piece);
+}
+
+function endAt(pieces: Pieces, piece: number, step: 1 | -1): number {
+  return 2 * pieces.centreline[piece] + (step === 1 ? 1 : 0);
 }
 
 /**
@@ -317,11 +307,6 @@ export function roundingAtSeam(
   const shorter = Math.min(centrelineLength[end >> 1], centrelineLength[other >> 1]);
   if (shorter >= half[firstPiece[end >> 1]]) return ROUND;
   return { onX: -outX[other], onY: -outY[other], mostMm: 2 * slackMm };
-}
-
-function isRoundAt(pieces: Pieces, piece: number, ends: StripEnds | null, side: 0 | 1): boolean {
-  const isVertex = side === 0 ? startsAtVertex(pieces, piece) : endsAtVertex(pieces, piece);
-  return isVertex || (ends !== null && ends.seam[2 * pieces.centreline[piece] + side] === 1);
 }
 
 /** The t in [0, span] with low ≤ w0 + t dw ≤ high. */

@@ -8,25 +8,14 @@
  *   until the estimated loss, (p − c)/2 or (p − c)/3, is within the tolerance.
  * Cost: linear in the pieces. A cusp, where no piece is straight enough, ends at a millionth of the curve.
  */
-import { type Curve, type Ellipse, ellipseX, ellipseY } from '../geometry/curve.ts';
+import { Bounds } from '../geometry/bounds.ts';
+import { type Curve, type Ellipse, ellipseX, ellipseY, splitCubic } from '../geometry/curve.ts';
 import type { Matrix, PathCommand } from '../svg/types.ts';
 import { ValueError } from '../svg/value-error.ts';
-
-export interface Subpath {
-  /** x0 y0 x1 y1 … ; consecutive points differ; a closed one repeats its first point at the end. */
-  readonly points: Float64Array;
-  /** One per piece: radius of curvature there, 0 for a straight piece. */
-  readonly bendRadius: Float64Array;
-  /** The curve each piece was cut from, null for a straight one; null when all are straight. */
-  readonly curves: readonly (Curve | null)[] | null;
-  /** Drawn closed (z), and encloses something. */
-  readonly closed: boolean;
-  /** First and last point are the same, whether closed or drawn so. */
-  readonly endsMeet: boolean;
-}
+import type { Centreline } from './types.ts';
 
 export interface Flattened {
-  readonly subpaths: readonly Subpath[];
+  readonly subpaths: readonly Centreline[];
   /** Subpaths that were drawn and have no length. */
   readonly zeroLength: number;
 }
@@ -71,7 +60,7 @@ const ENDS_MEET = 1e-9;
 export const MAX_COORDINATE = 1e12;
 
 class Polyline {
-  readonly subpaths: Subpath[] = [];
+  readonly subpaths: Centreline[] = [];
   zeroLength = 0;
   readonly #matrix: Matrix;
   readonly #budget: PieceBudget;
@@ -170,47 +159,27 @@ class Polyline {
   }
 
   #cubic(x1: number, y1: number, x2: number, y2: number, x3: number, y3: number): void {
-    const X = [this.#mapX(this.#x, this.#y), this.#mapX(x1, y1), this.#mapX(x2, y2), this.#mapX(x3, y3)];
-    const Y = [this.#mapY(this.#x, this.#y), this.#mapY(x1, y1), this.#mapY(x2, y2), this.#mapY(x3, y3)];
-    const whole =
-      length(X[1] - X[0], Y[1] - Y[0]) + length(X[2] - X[1], Y[2] - Y[1]) + length(X[3] - X[2], Y[3] - Y[2]);
-    this.#cubicPieces(X[0], Y[0], X[1], Y[1], X[2], Y[2], X[3], Y[3], whole * SMALLEST_SHARE);
+    const points = [this.#x, this.#y, x1, y1, x2, y2, x3, y3];
+    for (let k = 0; k < 8; k += 2) {
+      const [x, y] = [points[k], points[k + 1]];
+      points[k] = this.#mapX(x, y);
+      points[k + 1] = this.#mapY(x, y);
+    }
+    this.#cubicPieces(points, SMALLEST_SHARE * polygonOf(points));
   }
 
   /** Halves by de Casteljau; the depth is bounded because each half's polygon is at most about half as long, or straight. */
-  #cubicPieces(
-    x0: number,
-    y0: number,
-    x1: number,
-    y1: number,
-    x2: number,
-    y2: number,
-    x3: number,
-    y3: number,
-    smallest: number,
-  ): void {
+  #cubicPieces(points: readonly number[], smallest: number): void {
+    const [x0, y0] = points;
+    const [x3, y3] = [points[6], points[7]];
     const chord = length(x3 - x0, y3 - y0);
-    const polygon = length(x1 - x0, y1 - y0) + length(x2 - x1, y2 - y1) + length(x3 - x2, y3 - y2);
+    const polygon = polygonOf(points);
     if (polygon - chord <= LOSS * (polygon + chord) || polygon <= smallest) {
-      const points = [x0, y0, x1, y1, x2, y2, x3, y3];
       const curve = polygon > chord ? ({ kind: 'cubic', points } as const) : null;
-      this.#add(x3, y3, middleRadius(x0, y0, x1, y1, x2, y2, x3, y3, chord), curve);
+      this.#add(x3, y3, middleRadius(points, chord), curve);
       return;
     }
-    const ax = (x0 + x1) / 2;
-    const ay = (y0 + y1) / 2;
-    const bx = (x1 + x2) / 2;
-    const by = (y1 + y2) / 2;
-    const cx = (x2 + x3) / 2;
-    const cy = (y2 + y3) / 2;
-    const abx = (ax + bx) / 2;
-    const aby = (ay + by) / 2;
-    const bcx = (bx + cx) / 2;
-    const bcy = (by + cy) / 2;
-    const mx = (abx + bcx) / 2;
-    const my = (aby + bcy) / 2;
-    this.#cubicPieces(x0, y0, ax, ay, abx, aby, mx, my, smallest);
-    this.#cubicPieces(mx, my, bcx, bcy, cx, cy, x3, y3, smallest);
+    for (const half of splitCubic(points, middle)) this.#cubicPieces(half, smallest);
   }
 
   #arc(command: PathCommand & { readonly kind: 'arc' }): void {
@@ -350,22 +319,21 @@ function ellipseRadius(e: Ellipse, t: number, chord: number): number {
 }
 
 /** |P′|³ / |P′ × P″| of a cubic at its middle, where P′ = ¾(P3 + P2 − P1 − P0) and P″ = 3(P0 − P1 − P2 + P3). */
-function middleRadius(
-  x0: number,
-  y0: number,
-  x1: number,
-  y1: number,
-  x2: number,
-  y2: number,
-  x3: number,
-  y3: number,
-  chord: number,
-): number {
+function middleRadius([x0, y0, x1, y1, x2, y2, x3, y3]: readonly number[], chord: number): number {
   const dx = 0.75 * (x3 + x2 - x1 - x0);
   const dy = 0.75 * (y3 + y2 - y1 - y0);
   const ddx = 3 * (x0 - x1 - x2 + x3);
   const ddy = 3 * (y0 - y1 - y2 + y3);
   return bend(length(dx, dy) ** 3 / Math.abs(dx * ddy - dy * ddx), chord);
+}
+
+/** Length of a cubic's control polygon. */
+function polygonOf([x0, y0, x1, y1, x2, y2, x3, y3]: readonly number[]): number {
+  return length(x1 - x0, y1 - y0) + length(x2 - x1, y2 - y1) + length(x3 - x2, y3 - y2);
+}
+
+function middle(a: number, b: number): number {
+  return (a + b) / 2;
 }
 
 function bend(radius: number, chord: number): number {
@@ -390,7 +358,7 @@ function tidy(
   radii: readonly number[],
   curves: readonly (Curve | null)[],
   how: 'open' | 'closed',
-): Subpath | null {
+): Centreline | null {
   const { extent, largest } = measure(points);
   // Rounding of coordinates as large as these, and of as small a path.
   const same = 1e-12 * extent + 4 * Number.EPSILON * largest;
@@ -438,22 +406,16 @@ function tidy(
   }
   return {
     points: Float64Array.from(kept),
+    closed: how === 'closed' && !isThereAndBack,
     bendRadius: Float64Array.from(keptRadii),
     curves: keptCurves.some((curve) => curve !== null) ? keptCurves : null,
-    closed: how === 'closed' && !isThereAndBack,
-    endsMeet: endsMeet && !(isThereAndBack && how === 'closed'),
   };
 }
 
 function measure(points: readonly number[]): { readonly extent: number; readonly largest: number } {
-  let [minX, minY] = points;
-  let [maxX, maxY] = points;
-  for (let i = 2; i < points.length; i += 2) {
-    minX = Math.min(minX, points[i]);
-    maxX = Math.max(maxX, points[i]);
-    minY = Math.min(minY, points[i + 1]);
-    maxY = Math.max(maxY, points[i + 1]);
-  }
-  const largest = Math.max(Math.abs(minX), Math.abs(maxX), Math.abs(minY), Math.abs(maxY));
-  return { extent: length(maxX - minX, maxY - minY), largest };
+  const bounds = new Bounds();
+  bounds.addLine(points);
+  const { left, top, right, bottom } = bounds;
+  const largest = Math.max(Math.abs(left), Math.abs(right), Math.abs(top), Math.abs(bottom));
+  return { extent: length(right - left, bottom - top), largest };
 }

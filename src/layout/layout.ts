@@ -3,44 +3,35 @@
  * units. Whether a hole is a port and a name a layer is for the run sheet to say.
  */
 import { InputError } from '../errors.ts';
+import { remembered } from '../groups.ts';
 import { PX_MM } from '../svg/lengths.ts';
 import { stretches } from '../svg/matrix.ts';
 import type { Clip, Group, Shape, SvgDrawing, Undrawn } from '../svg/types.ts';
 import { quoted, ValueError } from '../svg/value-error.ts';
 import { type Flattened, flatten, MAX_COORDINATE, MAX_PIECES, type PieceBudget } from './flatten.ts';
 import { type Circle, ROUNDNESS, roundRing } from './roundness.ts';
-import type { Drawn, Hole, Ignored, Layout, LayoutItem, Outline, Stroke } from './types.ts';
+import type { Centreline, Drawn, Hole, Ignored, Layout, LayoutItem, Outline, Stroke } from './types.ts';
 
 /**
  * @param where the file's name, for messages.
  * @throws InputError naming the shape for a point beyond ±1e12, and for more than 2 million segments.
  */
-export function layOut(drawing: SvgDrawing, where: string): Layout {
+export function layOut({ shapes, unread, ...scale }: SvgDrawing, where: string): Layout {
   const laying: Laying = {
     budget: { piecesLeft: MAX_PIECES },
     enclosing: new Map(),
-    pxUnits: PX_MM / drawing.unitMm,
+    pxUnits: PX_MM / scale.unitMm,
     zeroLength: 0,
   };
   const items: LayoutItem[] = [];
-  const undrawn: Undrawn[] = [...drawing.undrawn];
-  for (const shape of drawing.shapes) {
+  const undrawn: Undrawn[] = [...scale.undrawn];
+  for (const shape of shapes) {
     const item = toItemOrExplain(shape, laying, where);
     if (item !== null) items.push(item);
     else if (shape.name !== null) undrawn.push({ kind: 'shape', name: shape.name, why: whyNothing(shape) });
   }
-  const { unitMm, unitStated, unitReason, widthMm, heightMm, unread } = drawing;
   const zeroLength = laying.zeroLength === 0 ? {} : { 'subpath without length': laying.zeroLength };
-  return {
-    unitMm,
-    unitStated,
-    unitReason,
-    widthMm,
-    heightMm,
-    items,
-    undrawn,
-    unread: { ...unread, ...zeroLength },
-  };
+  return { ...scale, items, undrawn, unread: { ...unread, ...zeroLength } };
 }
 
 function whyNothing({ style, tag }: Shape): string {
@@ -104,14 +95,15 @@ function roundItem(shape: Shape, drawn: Drawn, laying: Laying): LayoutItem | nul
   const { filled, dashed } = shape.style;
   const stroked = shape.style.stroked && !dashed;
   if (shape.dataChannel && (filled || stroked)) {
-    return stroked
-      ? toStroke(shape, drawn, flattenShape(shape, laying), laying)
-      : toOutline(shape, drawn, laying, false);
+    const flat = flattenShape(shape, laying);
+    return stroked ? toStroke(shape, drawn, flat, laying) : toOutline(shape, drawn, flat, false);
   }
-  if (!filled && !stroked) return dashed ? toIgnored(shape, drawn, laying, 'dashed stroke') : null;
-  const circle = drawnCircle(shape);
+  if (!filled && !stroked && !dashed) return null;
+  const circle = filled || stroked ? drawnCircle(shape) : null;
   if (circle !== null) return toHole(drawn, circle, filled, stroked);
-  return filled ? toOutline(shape, drawn, laying, stroked) : toIgnored(shape, drawn, laying, 'ellipse');
+  const flat = flattenShape(shape, laying);
+  if (filled) return toOutline(shape, drawn, flat, stroked);
+  return toIgnored(drawn, flat, stroked ? 'ellipse' : 'dashed stroke');
 }
 
 function pathItem(shape: Shape, drawn: Drawn, laying: Laying): LayoutItem | null {
@@ -128,12 +120,17 @@ function pathItem(shape: Shape, drawn: Drawn, laying: Laying): LayoutItem | null
   // What is said to be a channel is one by its stroke, whatever fills it.
   if (filled && isClosed && !(shape.dataChannel && stroked)) {
     const [first, ...others] = flat.subpaths;
-    const mayBeRound = others.length === 0 && (first.closed || first.endsMeet) && !shape.dataChannel;
+    const mayBeRound = others.length === 0 && endsMeet(first) && !shape.dataChannel;
     const circle = mayBeRound ? roundRing(first.points) : null;
-    return circle !== null ? toHole(drawn, circle, true, stroked) : outlineOf(shape, drawn, flat, stroked);
+    return circle !== null ? toHole(drawn, circle, true, stroked) : toOutline(shape, drawn, flat, stroked);
   }
   if (stroked) return toStroke(shape, drawn, flat, laying);
-  return ignoredOf(drawn, flat, style.dashed ? 'dashed stroke' : 'fill');
+  return toIgnored(drawn, flat, style.dashed ? 'dashed stroke' : 'fill');
+}
+
+/** First and last point are the same, whether closed (z) or drawn so. */
+function endsMeet({ points }: Centreline): boolean {
+  return points[0] === points.at(-2) && points[1] === points.at(-1);
 }
 
 /** Coordinates of the fewest points that enclose anything. */
@@ -149,16 +146,11 @@ function toDrawn(shape: Shape, laying: Laying): Drawn {
   return { ordinal: shape.ordinal, name: shape.name, id: shape.id, groups: enclosingOf(shape, laying).names };
 }
 
-function enclosingOf(shape: Shape, laying: Laying): Enclosing {
-  let enclosing = laying.enclosing.get(shape.groups);
-  if (enclosing === undefined) {
-    enclosing = {
-      names: shape.groups.flatMap((group) => group.name ?? []),
-      dataDepth: shape.groups.findLast((group) => group.dataDepth !== null)?.dataDepth ?? null,
-    };
-    laying.enclosing.set(shape.groups, enclosing);
-  }
-  return enclosing;
+function enclosingOf({ groups }: Shape, { enclosing }: Laying): Enclosing {
+  return remembered(enclosing, groups, () => ({
+    names: groups.flatMap(({ name }) => name ?? []),
+    dataDepth: groups.findLast(({ dataDepth }) => dataDepth !== null)?.dataDepth ?? null,
+  }));
 }
 
 function toStroke(shape: Shape, drawn: Drawn, flat: Flattened, laying: Laying): Stroke {
@@ -167,12 +159,7 @@ function toStroke(shape: Shape, drawn: Drawn, flat: Flattened, laying: Laying): 
     ...drawn,
     width: strokeWidth(shape, laying),
     linecap: shape.style.linecap,
-    centrelines: flat.subpaths.map(({ points, closed, bendRadius, curves }) => ({
-      points,
-      closed,
-      bendRadius,
-      curves,
-    })),
+    centrelines: flat.subpaths,
     dataDepth: shape.dataDepth ?? enclosingOf(shape, laying).dataDepth,
     dataChannel: shape.dataChannel,
     disguises: disguisesOf(shape, flat),
@@ -235,19 +222,11 @@ function toHole(drawn: Drawn, circle: Circle, filled: boolean, stroked: boolean)
   return { kind: 'hole', ...drawn, ...circle, filled, stroked };
 }
 
-function toOutline(shape: Shape, drawn: Drawn, laying: Laying, stroked: boolean): Outline {
-  return outlineOf(shape, drawn, flattenShape(shape, laying), stroked);
-}
-
-function toIgnored(shape: Shape, drawn: Drawn, laying: Laying, reason: string): Ignored {
-  return ignoredOf(drawn, flattenShape(shape, laying), reason);
-}
-
-function outlineOf({ dataChannel }: Shape, drawn: Drawn, flat: Flattened, stroked: boolean): Outline {
+function toOutline({ dataChannel }: Shape, drawn: Drawn, flat: Flattened, stroked: boolean): Outline {
   return { kind: 'outline', ...drawn, ...ringsOf(flat), stroked, dataChannel };
 }
 
-function ignoredOf(drawn: Drawn, flat: Flattened, reason: string): Ignored {
+function toIgnored(drawn: Drawn, flat: Flattened, reason: string): Ignored {
   return { kind: 'ignored', ...drawn, reason, ...ringsOf(flat) };
 }
 

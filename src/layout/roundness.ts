@@ -1,3 +1,5 @@
+import { distanceToSegment } from '../geometry/segment.ts';
+
 /** "Round within 1 %": the largest and the smallest distance of an outline from its middle differ by at most that. */
 export const ROUNDNESS = 0.01;
 
@@ -25,7 +27,7 @@ export function roundRing(ring: Float64Array): Circle | null {
     const x1 = ring[i + 2] - circle.x;
     const y1 = ring[i + 3] - circle.y;
     farthest = Math.max(farthest, Math.hypot(x0, y0));
-    nearest = Math.min(nearest, originToPiece(x0, y0, x1, y1));
+    nearest = Math.min(nearest, distanceToSegment(0, 0, x0, y0, x1, y1));
     doubleArea += x0 * y1 - x1 * y0;
   }
   const isRound = farthest <= (1 + ROUNDNESS) * nearest;
@@ -76,12 +78,4 @@ function pieceWeights(ring: Float64Array, count: number): Float64Array {
     weights[(i + 1) % count] += half;
   }
   return weights;
-}
-
-function originToPiece(x0: number, y0: number, x1: number, y1: number): number {
-  const dx = x1 - x0;
-  const dy = y1 - y0;
-  const squared = dx * dx + dy * dy;
-  const t = squared === 0 ? 0 : Math.min(1, Math.max(0, -(x0 * dx + y0 * dy) / squared));
-  return Math.hypot(x0 + t * dx, y0 + t * dy);
 }

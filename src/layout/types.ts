@@ -1,11 +1,10 @@
-import type { Undrawn } from '../svg/types.ts';
-
 /**
  * The layout in drawing units (root user units, y down), before any run sheet is known.
  * Curves are already cut into straight pieces; each piece keeps its curve's bend radius.
  */
 
 import type { Curve } from '../geometry/curve.ts';
+import type { DrawingScale, ShapeStyle, Undrawn } from '../svg/types.ts';
 
 export interface Centreline {
   /** x0 y0 x1 y1 … ; consecutive points differ; a closed centreline repeats its first point at the end. */
@@ -31,13 +30,13 @@ export interface Stroke extends Drawn {
   readonly kind: 'stroke';
   /** Full stroke width in drawing units; null when the transform is not a similarity (unsized-stroke). */
   readonly width: number | null;
-  readonly linecap: 'butt' | 'round' | 'square';
+  readonly linecap: ShapeStyle['linecap'];
   readonly centrelines: readonly Centreline[];
   /** `data-depth` of the element, else of the nearest group that has one, as written. */
   readonly dataDepth: string | null;
   /** Said to be a channel (`data-channel`), whatever it looks like. */
   readonly dataChannel: boolean;
-  readonly disguises: readonly ('clip-path' | 'mask' | 'opacity' | 'marker' | 'filter')[];
+  readonly disguises: ShapeStyle['disguises'];
 }
 
 /** A circle, or an ellipse or closed filled path that is round within 1 %. Whether it is a port is for chip/ to say. */
@@ -50,35 +49,30 @@ export interface Hole extends Drawn {
   readonly stroked: boolean;
 }
 
-/** A shape that is filled and not round, closed by its fill where it is not drawn closed: never a centreline. */
-export interface Outline extends Drawn {
-  readonly kind: 'outline';
+interface DrawnRings extends Drawn {
   readonly rings: readonly Float64Array[];
   /** The curves of each ring, as a centreline's; left out where all are straight. */
   readonly ringCurves?: readonly (readonly (Curve | null)[] | null)[];
+}
+
+/** A shape that is filled and not round, closed by its fill where it is not drawn closed: never a centreline. */
+export interface Outline extends DrawnRings {
+  readonly kind: 'outline';
   readonly stroked: boolean;
   /** Said to be a channel (`data-channel`), but without a stroke it has no width. */
   readonly dataChannel: boolean;
 }
 
 /** Drawn and not read: text, images, dashed strokes … Geometry kept, for a chip edge may be among them. */
-export interface Ignored extends Drawn {
+export interface Ignored extends DrawnRings {
   readonly kind: 'ignored';
   /** text, image, dashed stroke, fill … : the key in the count of ignored shapes. */
   readonly reason: string;
-  readonly rings: readonly Float64Array[];
-  /** The curves of each ring, as a centreline's; left out where all are straight. */
-  readonly ringCurves?: readonly (readonly (Curve | null)[] | null)[];
 }
 
 export type LayoutItem = Stroke | Hole | Outline | Ignored;
 
-export interface Layout {
-  readonly unitMm: number;
-  readonly unitStated: boolean;
-  readonly unitReason: string;
-  readonly widthMm: number | null;
-  readonly heightMm: number | null;
+export interface Layout extends DrawingScale {
   /** In document order. */
   readonly items: readonly LayoutItem[];
   /** Named shapes and groups that are not drawn; a group may be listed that also holds what is drawn. */

@@ -4,9 +4,8 @@ import {
   addShapeStretches,
   addStripStretches,
   type PieceShape,
-  roundingAtEnd,
+  roundingAt,
   roundingAtSeam,
-  roundingAtStart,
   STRAIGHT,
   type StripEnds,
 } from '../geometry/strip.ts';
@@ -57,10 +56,10 @@ export class KeptStrips {
     this.addShape(into, c, low, high, ax, ay, bx, by, {
       atStart: startMoves
         ? roundingAtSeam(pieces, 2 * c, this.ends, slackMm)
-        : roundingAtStart(pieces, piece, this.ends, slackMm, from, to),
+        : roundingAt(pieces, piece, -1, this.ends, slackMm, from, to),
       atEnd: endMoves
         ? roundingAtSeam(pieces, 2 * c + 1, this.ends, slackMm)
-        : roundingAtEnd(pieces, piece, this.ends, slackMm, from, to),
+        : roundingAt(pieces, piece, 1, this.ends, slackMm, from, to),
     });
   }
 
@@ -90,12 +89,12 @@ export class KeptStrips {
       atStart: growsAtStart
         ? outOf(2 * c)
         : low === start
-          ? roundingAtStart(pieces, piece, this.ends, slackMm, from, to)
+          ? roundingAt(pieces, piece, -1, this.ends, slackMm, from, to)
           : null,
       atEnd: growsAtEnd
         ? outOf(2 * c + 1)
         : high === end
-          ? roundingAtEnd(pieces, piece, this.ends, slackMm, from, to)
+          ? roundingAt(pieces, piece, 1, this.ends, slackMm, from, to)
           : null,
     });
     if (growsAtStart) {

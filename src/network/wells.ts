@@ -1,7 +1,7 @@
 import type { Port } from '../chip/types.ts';
 import { ROUND, type Rounding } from '../geometry/rounding.ts';
 import { distanceToSegment, nearestParameter } from '../geometry/segment.ts';
-import { roundingAtEnd, roundingAtStart } from '../geometry/strip.ts';
+import { roundingAt } from '../geometry/strip.ts';
 import { type Draft, END_IN_PORT, endPiece, endPosition } from './draft.ts';
 
 /**
@@ -181,7 +181,7 @@ function circleTouchesStrip(draft: Draft, port: Port, i: number): boolean {
   // is but a sector, the centre must lie before it too, or the next piece decides.
   const isBefore = (rounding: Rounding | null, x: number, y: number): boolean =>
     rounding !== null && (rounding === ROUND || x * rounding.onX + y * rounding.onY <= slackMm);
-  if (along === 0) return isBefore(roundingAtStart(pieces, i, null, slackMm), wx, wy);
-  const atEnd = along === length ? roundingAtEnd(pieces, i, null, slackMm) : null;
+  if (along === 0) return isBefore(roundingAt(pieces, i, -1, null, slackMm), wx, wy);
+  const atEnd = along === length ? roundingAt(pieces, i, 1, null, slackMm) : null;
   return isBefore(atEnd, port.xMm - pieces.x2[i], port.yMm - pieces.y2[i]);
 }

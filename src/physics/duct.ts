@@ -13,7 +13,6 @@
  * e^(−nπl/2s) or faster: at most 13 terms, and the last bit or two at any aspect ratio.
  * Assumes a Newtonian fluid, no slip, rigid walls, no entrance effects. Cost: about a microsecond for one form.
  */
-import type { WallProfile } from './wall-profile.ts';
 import { longWallProfile, shareAbove, shortWallProfile } from './wall-profile.ts';
 
 /** Six numbers of one duct, or their logarithmic derivatives. */
@@ -94,20 +93,6 @@ export function gradientOf(form: DuctForm, viscosityPaS: number, flowM3s: number
 }
 
 /**
- * Wall shear (Pa) on the floor at y (m) from its middle, |y| ≤ width/2, at a pressure gradient (Pa/m).
- * Its sign is the gradient's.
- * @throws RangeError when y lies off the floor.
- */
-export function floorShearAt(form: DuctForm, gradientPaM: number, yM: number): number {
-  return shearAt(form, form.widthM, gradientPaM, yM);
-}
-
-/** The same on the side, at z (m) from its middle, |z| ≤ depth/2. */
-export function sideShearAt(form: DuctForm, gradientPaM: number, zM: number): number {
-  return shearAt(form, form.depthM, gradientPaM, zM);
-}
-
-/**
  * Share (0 … 1) of the floor's width whose wall shear, without regard to sign, lies in the range; error below 1e-12.
  * Both ends carry a relative slack of 1e-12: in a flat duct the shear is the same to the last bits over most of the floor,
  * and a limit equal to it must not be decided by rounding.
@@ -131,13 +116,9 @@ export function sideShareInside(form: DuctForm, gradientPaM: number, range: Shea
 }
 
 function refuseSides(widthM: number, depthM: number): void {
-  for (const [name, side] of [
-    ['width', widthM],
-    ['depth', depthM],
-  ] as const) {
-    if (!(side > 0 && side < Infinity)) {
+  for (const [name, side] of Object.entries({ width: widthM, depth: depthM })) {
+    if (!(side > 0 && side < Infinity))
       throw new RangeError(`a duct's ${name} must be above 0 m and finite, not ${side}`);
-    }
   }
 }
 
@@ -226,13 +207,9 @@ function seriesOf(aspect: number): Series {
 }
 
 /** Factors by wall length; `onWalls` says which wall is the floor. */
-interface ShapeFactors {
+interface ShapeFactors extends Pick<Series, 'longMean' | 'longPeak' | 'shortMean' | 'shortPeak'> {
   readonly resistance: number;
   readonly peakOverMean: number;
-  readonly longMean: number;
-  readonly longPeak: number;
-  readonly shortMean: number;
-  readonly shortPeak: number;
 }
 
 function factorsOf(sums: Series, l: number, s: number): ShapeFactors {
@@ -282,18 +259,6 @@ function onWalls(of: ShapeFactors, floorIsLong: boolean): DuctFactors {
   };
 }
 
-function shearAt(form: DuctForm, wallM: number, gradientPaM: number, fromMiddleM: number): number {
-  const fromCornerM = wallM / 2 - Math.abs(fromMiddleM);
-  if (!(fromCornerM >= 0)) {
-    throw new RangeError(
-      `a place on a wall ${wallM} m wide lies within ${wallM / 2} m of its middle, not ${fromMiddleM}`,
-    );
-  }
-  const shortSide = Math.min(form.widthM, form.depthM);
-  const profile = profileOf(form, wallM);
-  return C_4_PI2 * gradientPaM * shortSide * profile.at((Math.PI * fromCornerM) / shortSide).value;
-}
-
 const SLACK = 1e-12;
 
 function shareInside(
@@ -303,7 +268,8 @@ function shareInside(
   range: ShearRange,
   spanM: number,
 ): number {
-  const scale = C_4_PI2 * Math.abs(gradientPaM) * Math.min(form.widthM, form.depthM);
+  const shortSide = Math.min(form.widthM, form.depthM);
+  const scale = C_4_PI2 * Math.abs(gradientPaM) * shortSide;
   if (!(scale < Infinity))
     throw new RangeError(`a pressure gradient must be finite, not ${gradientPaM} Pa/m`);
   const min = (range.minPa ?? 0) * (1 - SLACK);
@@ -311,14 +277,9 @@ function shareInside(
   if (Number.isNaN(min) || Number.isNaN(max)) throw new RangeError('a shear limit is not a number');
   if (max < 0) return 0;
   if (scale === 0) return min <= 0 ? 1 : 0;
-  const profile = profileOf(form, wallM);
+  const aspect = Math.max(form.widthM, form.depthM) / shortSide;
+  const profile = wallM === shortSide && aspect > 1 ? shortWallProfile(aspect) : longWallProfile(aspect);
   // The shear falls from the middle outwards, so what exceeds a limit is the middle of the wall.
   const above = (limit: number) => Math.min(1, (shareAbove(profile, limit / scale) * wallM) / spanM);
   return Math.max(0, above(min) - above(max));
-}
-
-function profileOf(form: DuctForm, wallM: number): WallProfile {
-  const shortSide = Math.min(form.widthM, form.depthM);
-  const aspect = Math.max(form.widthM, form.depthM) / shortSide;
-  return wallM === shortSide && aspect > 1 ? shortWallProfile(aspect) : longWallProfile(aspect);
 }

@@ -246,7 +246,7 @@ function pointsOf(rows: readonly JointRow[]): readonly RatioPoint[] {
 }
 
 function atAspect(row: JointRow, aspect: number): number {
-  if (!(aspect >= 0)) throw new RangeError(`an aspect w/h lies between 0 and Infinity, not ${aspect}`);
+  refuseAspect(aspect);
   // A chip has few aspects and many joints: the last value of each row is nearly always the one asked for.
   const last = LAST_ASKED.get(row);
   if (last?.aspect === aspect) return last.k;
@@ -270,7 +270,7 @@ function mitreForm(k45: number, k90: number, turn: number): number {
 
 /** c = 12µ/(h³ r_w w): what a flat duct of this width would resist over what this one does; 0 deep, 1 shallow. */
 function spreadingShare(aspect: number): number {
-  if (!(aspect >= 0)) throw new RangeError(`an aspect w/h lies between 0 and Infinity, not ${aspect}`);
+  refuseAspect(aspect);
   if (aspect === 0) return 0;
   if (aspect === Infinity) return 1;
   const { w, h } = sidesOf(aspect);
@@ -359,6 +359,10 @@ function digamma(x: number): number {
   const u = 1 / (at * at);
   const tail = u * (1 / 12 - u * (1 / 120 - u * (1 / 252 - u * (1 / 240 - u * (1 / 132)))));
   return shift + Math.log(at) - 1 / (2 * at) - tail;
+}
+
+function refuseAspect(aspect: number): void {
+  if (!(aspect >= 0)) throw new RangeError(`an aspect w/h lies between 0 and Infinity, not ${aspect}`);
 }
 
 function refuseWidthRatio(widthRatio: number): void {

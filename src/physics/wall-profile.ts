@@ -25,48 +25,42 @@ export interface WallProfile {
 /** Profile of the long wall of a duct with l/s = aspect ≥ 1. */
 export function longWallProfile(aspect: number): WallProfile {
   const period = Math.PI * aspect;
-  const half = period / 2;
-  return {
-    half,
-    at: (raw) => {
-      const x = Math.min(raw, half);
-      if (!(x > 0)) return { value: 0, slope: Infinity };
-      let value = singleWall(x);
-      let slope = 0.5 * lnCoth(x / 2);
-      for (let n = 1; ; n += 2) {
-        const far = Math.exp(-n * (period - x));
-        if (far < 1e-18) break;
-        const scale = 1 + Math.exp(-n * period);
-        const drop = Math.expm1(-2 * n * x);
-        value += (far * drop) / (scale * n * n);
-        slope -= (far * (2 + drop)) / (scale * n);
-      }
-      return { value, slope };
-    },
-  };
+  return risingTo(period / 2, (x) => {
+    let value = singleWall(x);
+    let slope = 0.5 * lnCoth(x / 2);
+    for (let n = 1; ; n += 2) {
+      const far = Math.exp(-n * (period - x));
+      if (far < 1e-18) break;
+      const scale = 1 + Math.exp(-n * period);
+      const drop = Math.expm1(-2 * n * x);
+      value += (far * drop) / (scale * n * n);
+      slope -= (far * (2 + drop)) / (scale * n);
+    }
+    return { value, slope };
+  });
 }
 
 /** Profile of the short wall of a duct with l/s = aspect ≥ 1. */
 export function shortWallProfile(aspect: number): WallProfile {
-  const half = Math.PI / 2;
-  return {
-    half,
-    at: (raw) => {
-      const x = Math.min(raw, half);
-      if (!(x > 0)) return { value: 0, slope: Infinity };
-      const lnTan = Math.log(Math.tan(x / 2));
-      let value = halfIntegralOfXOverSin(x) - (x / 2) * lnTan;
-      let slope = -0.5 * lnTan;
-      for (let n = 1; ; n += 2) {
-        const q = Math.exp(-n * Math.PI * aspect);
-        if (q < 1e-18) break;
-        const lag = (2 * q) / (1 + q); // 1 − tanh(nπr/2)
-        value -= (lag * Math.sin(n * x)) / (n * n);
-        slope -= (lag * Math.cos(n * x)) / n;
-      }
-      return { value, slope };
-    },
-  };
+  return risingTo(Math.PI / 2, (x) => {
+    const lnTan = Math.log(Math.tan(x / 2));
+    let value = halfIntegralOfXOverSin(x) - (x / 2) * lnTan;
+    let slope = -0.5 * lnTan;
+    for (let n = 1; ; n += 2) {
+      const q = Math.exp(-n * Math.PI * aspect);
+      if (q < 1e-18) break;
+      const lag = (2 * q) / (1 + q); // 1 − tanh(nπr/2)
+      value -= (lag * Math.sin(n * x)) / (n * n);
+      slope -= (lag * Math.cos(n * x)) / n;
+    }
+    return { value, slope };
+  });
+}
+
+/** Nought at the corner, where it rises without bound, and no further than the middle. */
+function risingTo(half: number, inside: WallProfile['at']): WallProfile {
+  const at: WallProfile['at'] = (x) => (x > 0 ? inside(Math.min(x, half)) : { value: 0, slope: Infinity });
+  return { half, at };
 }
 
 /**

@@ -7,6 +7,7 @@
  * A block of c columns with r rows below them is a panel of (c + r) rows × c columns, stored row by row; of its top c × c square only what lies below the
  * diagonal is used.
  */
+import { byGroup } from '../groups.ts';
 import { orderForLittleFill } from './order.ts';
 import { type Adjacency, adjacencyOf, type GraphPattern } from './pattern.ts';
 
@@ -28,11 +29,8 @@ export interface Analysis {
   readonly edgeEntry: Int32Array;
   /** Entries of L below the diagonal before blocks were joined. */
   readonly fill: number;
-  /** Multiplications of one factorisation, before blocks were joined. */
-  readonly multiplications: number;
-  /** Widest block and longest panel, for workspaces. */
+  /** For workspaces. */
   readonly widestBlock: number;
-  readonly longestPanel: number;
 }
 
 /** Orders the nodes, builds the elimination tree and lays out the factor. */
@@ -53,7 +51,6 @@ export function analyse(pattern: GraphPattern): Analysis {
 
   const panelStart = new Int32Array(blockCount + 1);
   let widestBlock = 0;
-  let longestPanel = 0;
   for (let b = 0; b < blockCount; b++) {
     const columns = firstColumn[b + 1] - firstColumn[b];
     const length = columns + rowStart[b + 1] - rowStart[b];
@@ -62,13 +59,6 @@ export function analyse(pattern: GraphPattern): Analysis {
       throw new RangeError(`factor of ${nodeCount} nodes would hold more than 2^31 entries`);
     panelStart[b + 1] = end;
     widestBlock = Math.max(widestBlock, columns);
-    longestPanel = Math.max(longestPanel, length);
-  }
-  let fill = 0;
-  let multiplications = 0;
-  for (const c of tree.count) {
-    fill += c;
-    multiplications += (c * (c + 3)) / 2;
   }
   const layout = { firstColumn, rowStart, row, blockOfColumn, panelStart };
   return {
@@ -78,10 +68,8 @@ export function analyse(pattern: GraphPattern): Analysis {
     blockCount,
     ...layout,
     edgeEntry: entriesOf(pattern, place, layout),
-    fill,
-    multiplications,
+    fill: tree.count.reduce((sum, count) => sum + count, 0),
     widestBlock,
-    longestPanel,
   };
 }
 
@@ -151,12 +139,10 @@ function postorder({ parent, count }: Tree): Int32Array {
 
 function byFallingCount(count: Int32Array): Int32Array {
   const n = count.length;
-  const bucketStart = new Int32Array(n + 2);
-  for (let j = 0; j < n; j++) bucketStart[n - count[j] + 1]++;
-  for (let k = 0; k <= n; k++) bucketStart[k + 1] += bucketStart[k];
-  const sorted = new Int32Array(n);
-  for (let j = 0; j < n; j++) sorted[bucketStart[n - count[j]]++] = j;
-  return sorted;
+  return byGroup(
+    n + 1,
+    count.map((c) => n - c),
+  ).member;
 }
 
 function renumbered({ parent, count }: Tree, tour: Int32Array): Tree {

@@ -17,19 +17,7 @@ export interface Factor {
   readonly entry: Float64Array;
   /** D, by place in the order. */
   readonly pivot: Float64Array;
-  readonly workspace: FactorWorkspace;
-}
-
-interface FactorWorkspace {
-  readonly ground: Float64Array;
-  /** Row of the block at work for each place. */
-  readonly rowInPanel: Int32Array;
-  /** Blocks waiting to add to a block, as lists. */
-  readonly waiting: Int32Array;
-  readonly nextWaiting: Int32Array;
-  /** First row of a block that has not been added anywhere yet. */
-  readonly pendingRow: Int32Array;
-  readonly scaled: Float64Array;
+  readonly workspace: ReturnType<typeof emptyWorkspace>;
 }
 
 /** A pivot that is nought, negative or no number: the node hangs on no ground, or a weight is not a finite number ≥ 0. */
@@ -77,19 +65,26 @@ export function factor(
 }
 
 function emptyFactor(analysis: Analysis): Factor {
-  const { nodeCount, blockCount, panelStart, widestBlock } = analysis;
+  const { nodeCount, blockCount, panelStart } = analysis;
   return {
     analysis,
     entry: new Float64Array(panelStart[blockCount]),
     pivot: new Float64Array(nodeCount),
-    workspace: {
-      ground: new Float64Array(nodeCount),
-      rowInPanel: new Int32Array(nodeCount),
-      waiting: new Int32Array(blockCount),
-      nextWaiting: new Int32Array(blockCount),
-      pendingRow: new Int32Array(blockCount),
-      scaled: new Float64Array(widestBlock * Math.max(4, widestBlock)),
-    },
+    workspace: emptyWorkspace(analysis),
+  };
+}
+
+function emptyWorkspace({ nodeCount, blockCount, widestBlock }: Analysis) {
+  return {
+    ground: new Float64Array(nodeCount),
+    /** Row of the block at work for each place. */
+    rowInPanel: new Int32Array(nodeCount),
+    /** Blocks waiting to add to a block, as lists. */
+    waiting: new Int32Array(blockCount),
+    nextWaiting: new Int32Array(blockCount),
+    /** First row of a block that has not been added anywhere yet. */
+    pendingRow: new Int32Array(blockCount),
+    scaled: new Float64Array(widestBlock * Math.max(4, widestBlock)),
   };
 }
 

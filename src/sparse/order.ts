@@ -8,6 +8,7 @@
  * Words of the paper: a *variable* is a node not yet eliminated, an *element* is an eliminated node that stands for the clique of the variables it was
  * joined to (its *boundary*). The list of a variable holds elements first, then variables; the list of an element is its boundary.
  */
+import { byGroup } from '../groups.ts';
 import type { Adjacency } from './pattern.ts';
 
 /** Order of elimination: result[k] is the node to eliminate k-th. */
@@ -28,73 +29,52 @@ export function orderForLittleFill(adjacency: Adjacency): Int32Array {
 const ELEMENT = 1;
 const DEAD = 2;
 
-interface QuotientGraph {
-  readonly nodeCount: number;
-  readonly state: Uint8Array;
-  /** Lists of all nodes, one after another with gaps. */
-  list: Int32Array;
-  listEnd: number;
-  readonly listStart: Int32Array;
-  readonly listLength: Int32Array;
-  /** How many entries at the front of a variable's list are elements. */
-  readonly elementCount: Int32Array;
-  /** How many nodes a variable or pivot stands for; negative while it is on the boundary at work, 0 once it is dead. */
-  readonly weight: Int32Array;
-  /** Variable: bound on its external degree. Element: weight of its boundary. */
-  readonly degree: Int32Array;
-  /** Node into which a dead variable went. */
-  readonly into: Int32Array;
-  /** Place of each pivot in the order, −1 for others. */
-  readonly pivotRank: Int32Array;
-  pivotCount: number;
-  /** Nodes eliminated so far, by weight. */
-  eliminated: number;
-  /** Double-linked lists of variables by degree. */
-  readonly degreeHead: Int32Array;
-  readonly degreeNext: Int32Array;
-  readonly degreePrevious: Int32Array;
-  leastDegree: number;
-  /** Element e: mark[e] − stamp = weight of its boundary outside the one at work, where mark[e] ≥ stamp. */
-  readonly mark: Int32Array;
-  stamp: number;
-  largestBoundary: number;
-  readonly hashHead: Int32Array;
-  readonly hashNext: Int32Array;
-  readonly hashOf: Int32Array;
-  /** Weight of the boundary at work. */
-  boundaryWeight: number;
-}
+type QuotientGraph = ReturnType<typeof emptyGraph>;
 
-function quotientGraphOf({ start, neighbour }: Adjacency): QuotientGraph {
-  const nodeCount = start.length - 1;
-  const list = new Int32Array(neighbour.length + (neighbour.length >> 2) + 2 * nodeCount + 1);
-  list.set(neighbour);
-  const q: QuotientGraph = {
+function emptyGraph(nodeCount: number, list: Int32Array, listEnd: number, listStart: Int32Array) {
+  return {
     nodeCount,
     state: new Uint8Array(nodeCount),
+    /** Lists of all nodes, one after another with gaps. */
     list,
-    listEnd: neighbour.length,
-    listStart: start.slice(0, nodeCount),
+    listEnd,
+    listStart,
     listLength: new Int32Array(nodeCount),
+    /** How many entries at the front of a variable's list are elements. */
     elementCount: new Int32Array(nodeCount),
+    /** How many nodes a variable or pivot stands for; negative while it is on the boundary at work, 0 once it is dead. */
     weight: new Int32Array(nodeCount).fill(1),
+    /** Variable: bound on its external degree. Element: weight of its boundary. */
     degree: new Int32Array(nodeCount),
+    /** Node into which a dead variable went. */
     into: new Int32Array(nodeCount).fill(-1),
+    /** Place of each pivot in the order, −1 for others. */
     pivotRank: new Int32Array(nodeCount).fill(-1),
     pivotCount: 0,
+    /** Nodes eliminated so far, by weight. */
     eliminated: 0,
+    /** Double-linked lists of variables by degree. */
     degreeHead: new Int32Array(nodeCount + 1).fill(-1),
     degreeNext: new Int32Array(nodeCount).fill(-1),
     degreePrevious: new Int32Array(nodeCount).fill(-1),
     leastDegree: 0,
+    /** Element e: mark[e] − stamp = weight of its boundary outside the one at work, where mark[e] ≥ stamp. */
     mark: new Int32Array(nodeCount),
     stamp: 1,
     largestBoundary: 0,
     hashHead: new Int32Array(nodeCount).fill(-1),
     hashNext: new Int32Array(nodeCount).fill(-1),
     hashOf: new Int32Array(nodeCount),
+    /** Weight of the boundary at work. */
     boundaryWeight: 0,
   };
+}
+
+function quotientGraphOf({ start, neighbour }: Adjacency): QuotientGraph {
+  const nodeCount = start.length - 1;
+  const list = new Int32Array(neighbour.length + (neighbour.length >> 2) + 2 * nodeCount + 1);
+  list.set(neighbour);
+  const q = emptyGraph(nodeCount, list, neighbour.length, start.slice(0, nodeCount));
   // A node joined to a good part of the graph would make every degree bound near it worthless: it is set aside and comes last.
   const denseDegree = Math.max(16, 10 * Math.sqrt(nodeCount));
   for (let i = nodeCount - 1; i >= 0; i--) {
@@ -223,21 +203,8 @@ function freshStamp(q: QuotientGraph, step: number): number {
 
 /** Prunes the list of every boundary variable, bounds its degree, absorbs what the new element covers and sorts variables into hash buckets. */
 function updateBoundary(q: QuotientGraph, pivot: number): void {
-  const {
-    list,
-    listStart,
-    listLength,
-    elementCount,
-    weight,
-    mark,
-    degree,
-    state,
-    into,
-    hashOf,
-    hashHead,
-    hashNext,
-  } = q;
-  const stamp = q.stamp;
+  const { list, listStart, listLength, elementCount, weight, mark, degree, state, stamp } = q;
+  const { into, hashOf, hashHead, hashNext } = q;
   const start = listStart[pivot];
   const stop = start + listLength[pivot];
   for (let p = start; p < stop; p++) {
@@ -299,8 +266,8 @@ function updateBoundary(q: QuotientGraph, pivot: number): void {
 function mergeTwins(q: QuotientGraph, pivot: number): void {
   if (q.boundaryWeight > q.largestBoundary) q.largestBoundary = q.boundaryWeight;
   q.stamp = freshStamp(q, q.largestBoundary + 1);
-  const { list, listStart, listLength, elementCount, weight, mark, state, into, hashOf, hashHead, hashNext } =
-    q;
+  const { list, listStart, listLength, elementCount, weight, mark, state } = q;
+  const { into, hashOf, hashHead, hashNext } = q;
   const start = listStart[pivot];
   const stop = start + listLength[pivot];
   for (let p = start; p < stop; p++) {
@@ -366,8 +333,6 @@ function finishElement(q: QuotientGraph, pivot: number): void {
 function sequenceOf(q: QuotientGraph): Int32Array {
   const { nodeCount, into, pivotRank, pivotCount, listLength } = q;
   const rank = new Int32Array(nodeCount);
-  const start = new Int32Array(pivotCount + 2);
-  const dense: number[] = [];
   for (let i = 0; i < nodeCount; i++) {
     let root = i;
     while (into[root] >= 0) root = into[root];
@@ -376,18 +341,9 @@ function sequenceOf(q: QuotientGraph): Int32Array {
       into[j] = root;
       j = next;
     }
-    if (pivotRank[root] < 0) dense.push(i);
     rank[i] = pivotRank[root] < 0 ? pivotCount : pivotRank[root];
-    start[rank[i] + 1]++;
   }
-  for (let k = 0; k <= pivotCount; k++) start[k + 1] += start[k];
-  const order = new Int32Array(nodeCount);
-  const denseStart = start[pivotCount];
-  const cursor = start.slice(0, pivotCount);
-  for (let i = 0; i < nodeCount; i++) if (rank[i] < pivotCount) order[cursor[rank[i]]++] = i;
-  dense.sort((a, b) => listLength[a] - listLength[b] || a - b);
-  dense.forEach((i, k) => {
-    order[denseStart + k] = i;
-  });
+  const { first, member: order } = byGroup(pivotCount + 1, rank);
+  order.subarray(first[pivotCount]).sort((a, b) => listLength[a] - listLength[b] || a - b);
   return order;
 }

@@ -1,3 +1,5 @@
+import { sidesByNode } from '../groups.ts';
+
 /**
  * The pattern of a graph Laplacian: an undirected graph given by its edges.
  * The values come later, one weight per edge: w at row a, column b counts −w there and +w on both diagonals.
@@ -16,35 +18,16 @@ export interface Adjacency {
 }
 
 /** Lists the distinct neighbours of every node. O(nodes + edges). */
-export function adjacencyOf(pattern: GraphPattern): Adjacency {
-  const { nodeCount, edgeFrom, edgeTo } = pattern;
-  const rawStart = new Int32Array(nodeCount + 1);
-  for (let e = 0; e < edgeFrom.length; e++) {
-    if (edgeFrom[e] === edgeTo[e]) continue;
-    rawStart[edgeFrom[e] + 1]++;
-    rawStart[edgeTo[e] + 1]++;
-  }
-  for (let i = 0; i < nodeCount; i++) rawStart[i + 1] += rawStart[i];
-  const neighbour = new Int32Array(rawStart[nodeCount]);
-  const cursor = rawStart.slice(0, nodeCount);
-  for (let e = 0; e < edgeFrom.length; e++) {
-    const a = edgeFrom[e];
-    const b = edgeTo[e];
-    if (a === b) continue;
-    neighbour[cursor[a]++] = b;
-    neighbour[cursor[b]++] = a;
-  }
-  return withoutDoubles(rawStart, neighbour);
-}
-
-function withoutDoubles(rawStart: Int32Array, neighbour: Int32Array): Adjacency {
-  const nodeCount = rawStart.length - 1;
+export function adjacencyOf({ nodeCount, edgeFrom, edgeTo }: GraphPattern): Adjacency {
+  const { first, member: side } = sidesByNode(nodeCount, edgeFrom, edgeTo);
   const start = new Int32Array(nodeCount + 1);
+  const neighbour = new Int32Array(side.length);
   const lastSeenBy = new Int32Array(nodeCount).fill(-1);
   let kept = 0;
   for (let i = 0; i < nodeCount; i++) {
-    for (let p = rawStart[i]; p < rawStart[i + 1]; p++) {
-      const j = neighbour[p];
+    lastSeenBy[i] = i;
+    for (let p = first[i]; p < first[i + 1]; p++) {
+      const j = (side[p] & 1 ? edgeFrom : edgeTo)[side[p] >> 1];
       if (lastSeenBy[j] === i) continue;
       lastSeenBy[j] = i;
       neighbour[kept++] = j;

@@ -7,14 +7,12 @@
  * Sign: flow > 0 runs from edgeFrom to edgeTo; a source potential > 0 drives that way; an injection > 0 enters the circuit.
  */
 import type { Factor } from './factor.ts';
+import type { GraphPattern } from './pattern.ts';
 import { solve } from './solve.ts';
 
 /** Nodes 0 … unknownCount − 1 are those of the factor, in its order of nodes; the rest have given potentials. */
-export interface Circuit {
-  readonly nodeCount: number;
+export interface Circuit extends GraphPattern {
   readonly unknownCount: number;
-  readonly edgeFrom: Int32Array;
-  readonly edgeTo: Int32Array;
 }
 
 export interface CircuitLoad {
@@ -98,14 +96,8 @@ export function solveRefined(
   return { potentialHi, potentialLo, flowHi, flowLo, outflow, throughput, worstImbalance, refinements };
 }
 
-interface State {
-  readonly potentialHi: Float64Array;
-  readonly potentialLo: Float64Array;
-  readonly flowHi: Float64Array;
-  readonly flowLo: Float64Array;
-  readonly outflow: Float64Array;
+interface State extends Omit<CircuitFlow, 'worstImbalance' | 'refinements'> {
   readonly outflowLo: Float64Array;
-  readonly throughput: Float64Array;
 }
 
 /** Veltkamp's constant 2^27 + 1: splits a double into halves whose products are exact. */

@@ -3,12 +3,11 @@
  * order, then the `style` attribute, then the same again for what is `!important` (CSS Cascade 4, 6; SVG 2, 6.6).
  */
 import { InputError } from '../errors.ts';
-import { type Declarations, parseStyleAttribute } from './declarations.ts';
+import { remembered } from '../groups.ts';
+import { type Declarations, parseStyleAttribute, type Specified } from './declarations.ts';
 import { readSheets, type SheetRule } from './sheets.ts';
+import { INITIAL_STYLE } from './style.ts';
 import { attribute, type XmlElement } from './tree.ts';
-
-/** Property → value, as text; null when the element has none of its own. */
-export type Specified = ReadonlyMap<string, string> | null;
 
 export interface Cascade {
   /**
@@ -25,71 +24,32 @@ export interface Cascade {
 
 /** Attributes that stand for the CSS property of the same name (SVG 2, 6.6), as far as they are read here. */
 const PRESENTATION_ATTRIBUTES: ReadonlySet<string> = new Set([
-  'stroke',
-  'stroke-width',
-  'stroke-opacity',
-  'stroke-dasharray',
-  'stroke-linecap',
-  'fill',
-  'fill-opacity',
-  'visibility',
-  'color',
-  'marker-start',
-  'marker-mid',
-  'marker-end',
-  'display',
-  'opacity',
-  'clip-path',
-  'mask',
-  'filter',
-  'overflow',
-  'vector-effect',
-  'transform',
-  'transform-origin',
+  ...Object.keys(INITIAL_STYLE),
+  ...'display opacity clip-path mask filter overflow vector-effect transform transform-origin'.split(' '),
 ]);
 
 /** @param styles the `style` elements of the file, in document order. */
 export function makeCascade(styles: readonly XmlElement[], where: string): Cascade {
   const sheets = styles.length === 0 ? null : readSheets(styles, where);
   const byText = new Map<string, Declarations>();
-  const parsed = (element: XmlElement): Declarations => {
+  const declared = (element: XmlElement): Declarations => {
     const text = attribute(element, 'style');
-    if (text === undefined) return [];
-    let declarations = byText.get(text);
-    if (declarations === undefined) {
-      declarations = parseOrExplain(text, `${where}:${element.line}`);
-      byText.set(text, declarations);
-    }
-    return declarations;
+    if (text === undefined) return NONE;
+    return remembered(byText, text, () => parseOrExplain(text, `${where}:${element.line}`));
   };
   /** Elements that `use` draws again are matched once. */
   const known = new Map<XmlElement | null, Map<XmlElement, Specified>>();
-  const inlineOnly = new Map<Declarations, Specified>();
+  const inlineOnly = new Map<Declarations, Specified>([[NONE, null]]);
   const css = (element: XmlElement, copyOf: XmlElement | null): Specified => {
-    const inline = parsed(element);
-    if (sheets === null) {
-      if (inline.length === 0) return null;
-      let merged = inlineOnly.get(inline);
-      if (merged === undefined) {
-        merged = merge([], inline);
-        inlineOnly.set(inline, merged);
-      }
-      return merged;
-    }
-    let ofCopy = known.get(copyOf);
-    if (ofCopy === undefined) {
-      ofCopy = new Map();
-      known.set(copyOf, ofCopy);
-    }
-    let merged = ofCopy.get(element);
-    if (merged === undefined) {
-      merged = merge(sheets.matching(element, copyOf), inline);
-      ofCopy.set(element, merged);
-    }
-    return merged;
+    const inline = declared(element);
+    if (sheets === null) return remembered(inlineOnly, inline, () => merge([], inline));
+    const ofCopy = remembered(known, copyOf, () => new Map<XmlElement, Specified>());
+    return remembered(ofCopy, element, () => merge(sheets.matching(element, copyOf), inline));
   };
   return { css, specified, skippedRules: sheets?.skipped ?? 0 };
 }
+
+const NONE: Declarations = [];
 
 function parseOrExplain(text: string, where: string): Declarations {
   try {

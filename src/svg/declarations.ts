@@ -1,6 +1,12 @@
 import type { CssNode } from 'css-tree';
 import parseCss from 'css-tree/parser';
 
+/** Property → value, as text; null when an element has none of its own. */
+export type Specified = ReadonlyMap<string, string> | null;
+
+/** The properties that the shorthand `marker` sets. */
+export const MARKERS = ['marker-start', 'marker-mid', 'marker-end'] as const;
+
 /** CSS declarations of one rule or `style` attribute, in order; names in lower case, values trimmed, as text. */
 export type Declarations = readonly Declaration[];
 
@@ -46,7 +52,6 @@ function add(found: Declaration[], name: string, raw: string, important: boolean
   if (value === '' || !/^-?[a-zA-Z]/.test(name)) return;
   const property = name.toLowerCase();
   if (property === 'marker') {
-    for (const part of ['marker-start', 'marker-mid', 'marker-end'])
-      found.push({ property: part, value, important });
+    for (const part of MARKERS) found.push({ property: part, value, important });
   } else found.push({ property, value, important });
 }

@@ -40,6 +40,25 @@ export function parseLength(text: string): Length {
   return { value, unit: (match[2] ?? '').toLowerCase() as LengthUnit };
 }
 
+/** The text of a length, trimmed; null where it is not given or `auto`. */
+export function givenLength(text: string | undefined): string | null {
+  const written = text?.trim() ?? '';
+  return written === '' || written.toLowerCase() === 'auto' ? null : written;
+}
+
+/**
+ * The length of an attribute or property in user units.
+ * @throws ValueError that names it.
+ */
+export function readLength(name: string, text: string, whole: number | null): number {
+  try {
+    return toUserUnits(parseLength(text), whole);
+  } catch (cause) {
+    if (!(cause instanceof ValueError)) throw cause;
+    throw new ValueError(`${name}: ${cause.message}`, { cause });
+  }
+}
+
 /**
  * A length in user units (CSS pixels of the element's own coordinates).
  * @param whole what 100 % stands for; null when the drawing does not say.

@@ -3,6 +3,7 @@
  * A browser draws a path up to its first error; here the error is raised, because half a channel is a wrong chip.
  * Cost: linear in the text.
  */
+import { NUMBER } from './numbers.ts';
 import type { PathCommand } from './types.ts';
 import { quoted, ValueError } from './value-error.ts';
 
@@ -116,22 +117,15 @@ function readAbsolute(kind: string, reader: NumberReader, pen: Pen, dx: number, 
       return { kind: 'line', x: pen.x, y: dy + reader.next() };
     case 'c':
     case 's': {
-      const smooth = kind === 's';
-      const follows = pen.last === 'c' || pen.last === 's';
-      const x1 = smooth ? (follows ? 2 * pen.x - pen.controlX : pen.x) : dx + reader.next();
-      const y1 = smooth ? (follows ? 2 * pen.y - pen.controlY : pen.y) : dy + reader.next();
-      const x2 = dx + reader.next();
-      const y2 = dy + reader.next();
+      const [x1, y1] = kind === 's' ? reflected(pen, 'cs') : [dx + reader.next(), dy + reader.next()];
+      const [x2, y2] = [dx + reader.next(), dy + reader.next()];
       pen.controlX = x2;
       pen.controlY = y2;
       return { kind: 'cubic', x1, y1, x2, y2, x: dx + reader.next(), y: dy + reader.next() };
     }
     case 'q':
     case 't': {
-      const smooth = kind === 't';
-      const follows = pen.last === 'q' || pen.last === 't';
-      const x1 = smooth ? (follows ? 2 * pen.x - pen.controlX : pen.x) : dx + reader.next();
-      const y1 = smooth ? (follows ? 2 * pen.y - pen.controlY : pen.y) : dy + reader.next();
+      const [x1, y1] = kind === 't' ? reflected(pen, 'qt') : [dx + reader.next(), dy + reader.next()];
       pen.controlX = x1;
       pen.controlY = y1;
       return { kind: 'quadratic', x1, y1, x: dx + reader.next(), y: dy + reader.next() };
@@ -150,6 +144,11 @@ function readAbsolute(kind: string, reader: NumberReader, pen: Pen, dx: number, 
     default:
       return { kind: 'close' };
   }
+}
+
+/** First control point of a smooth curve: the last one mirrored in the pen, or the pen after anything but its own kinds. */
+function reflected({ x, y, controlX, controlY, last }: Pen, kinds: string): readonly [number, number] {
+  return last !== '' && kinds.includes(last) ? [2 * x - controlX, 2 * y - controlY] : [x, y];
 }
 
 /** Numbers with SVG's separators: blanks, one comma, or nothing where the next sign or point says enough. */
@@ -210,33 +209,25 @@ class NumberReader {
 
   number(): number {
     const text = this.#text;
-    const start = this.at;
-    let i = start;
-    let c = text.charCodeAt(i);
-    if (c === PLUS || c === MINUS) c = text.charCodeAt(++i);
-    const firstDigit = i;
-    while (isDigit(c)) c = text.charCodeAt(++i);
-    let digits = i - firstDigit;
-    if (c === POINT) {
-      const fraction = i + 1;
-      c = text.charCodeAt(++i);
-      while (isDigit(c)) c = text.charCodeAt(++i);
-      digits += i - fraction;
-    }
-    if (digits === 0) throw this.fault('a number is needed', text[i]);
-    if (c === 0x65 || c === 0x45) {
-      let j = i + 1;
-      const sign = text.charCodeAt(j);
-      if (sign === PLUS || sign === MINUS) j++;
-      if (!isDigit(text.charCodeAt(j))) throw this.fault('an exponent needs digits', text[j]);
-      while (isDigit(text.charCodeAt(j))) j++;
-      i = j;
-    }
-    const value = Number(text.slice(start, i));
-    if (!Number.isFinite(value)) throw this.fault('the number is too large', text[start]);
-    this.at = i;
+    NEXT_NUMBER.lastIndex = this.at;
+    const found = NEXT_NUMBER.exec(text)?.[0];
+    if (found === undefined) throw this.fault('a number is needed', this.#after(/[+-]?\.?/y, this.at));
+    const end = this.at + found.length;
+    const letter = text.charCodeAt(end);
+    if ((letter === 0x65 || letter === 0x45) && !/e/i.test(found))
+      throw this.fault('an exponent needs digits', this.#after(/[+-]?/y, end + 1));
+    const value = Number(found);
+    if (!Number.isFinite(value)) throw this.fault('the number is too large', found);
+    this.at = end;
     this.#fresh = false;
     return value;
+  }
+
+  /** The character behind what a pattern passes over; undefined at the end of the text. */
+  #after(pattern: RegExp, at: number): string | undefined {
+    pattern.lastIndex = at;
+    pattern.test(this.#text);
+    return this.#text[pattern.lastIndex];
   }
 
   fault(why: string, found: string | undefined): ValueError {
@@ -247,18 +238,13 @@ class NumberReader {
   }
 }
 
-const PLUS = 0x2b;
-const MINUS = 0x2d;
-const POINT = 0x2e;
-
-function isDigit(code: number): boolean {
-  return code >= 0x30 && code <= 0x39;
-}
+const NEXT_NUMBER = new RegExp(NUMBER, 'y');
 
 function isSpace(code: number): boolean {
   return code === 0x20 || code === 0x0a || code === 0x09 || code === 0x0d || code === 0x0c;
 }
 
 function startsNumber(code: number): boolean {
-  return isDigit(code) || code === PLUS || code === MINUS || code === POINT;
+  // A digit, +, − or a point.
+  return (code >= 0x30 && code <= 0x39) || code === 0x2b || code === 0x2d || code === 0x2e;
 }

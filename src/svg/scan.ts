@@ -7,6 +7,7 @@
  * Limits: no validation against a DTD; nothing outside the file is opened. Cost: linear in the text.
  */
 import { InputError } from '../errors.ts';
+import { remembered } from '../groups.ts';
 import { decodeReferences, type Entities, readEntities } from './entities.ts';
 import { MAX_ELEMENTS } from './limits.ts';
 import { quoted } from './value-error.ts';
@@ -137,9 +138,7 @@ class XmlScan {
     const text = this.#text;
     if (!/^<!DOCTYPE\b/i.test(text.slice(this.at, this.at + 10))) {
       if (text.length - this.at < 10) throw this.#cutOff('a declaration');
-      throw this.#fault(
-        `not XML at ${quoted(text.slice(this.at, this.at + 40))}; save the drawing as plain SVG`,
-      );
+      throw this.#notXmlHere('; save the drawing as plain SVG');
     }
     let subsetStart = -1;
     let i = this.at + 9;
@@ -162,9 +161,7 @@ class XmlScan {
     const name = this.#match(this.#closing)?.[1];
     if (name === undefined) {
       if (this.#match(this.#closingCutOff)) throw this.#cutOff('a closing tag');
-      throw this.#fault(
-        `not XML at ${quoted(this.#text.slice(this.at, this.at + 40))}; save the drawing as plain SVG`,
-      );
+      throw this.#notXmlHere('; save the drawing as plain SVG');
     }
     const open = this.#open.pop();
     if (open === undefined) throw this.#fault(`not XML: </${name}> closes nothing; remove it`);
@@ -179,13 +176,10 @@ class XmlScan {
 
   openingTag(): void {
     const text = this.#text;
-    this.#name.lastIndex = this.at + 1;
-    const name = this.#name.exec(text)?.[0];
+    const name = this.#match(this.#name, this.at + 1)?.[0];
     if (name === undefined) {
       if (this.at + 1 >= text.length) throw this.#cutOff('a tag');
-      throw this.#fault(
-        `not XML at ${quoted(text.slice(this.at, this.at + 40))}: "<" must open a tag; write "&lt;" for the character`,
-      );
+      throw this.#notXmlHere(': "<" must open a tag; write "&lt;" for the character');
     }
     if (this.#open.length === 0 && this.#tags.length > 0) {
       throw this.#fault(`a second root element <${name}> follows the drawing; keep only one <svg>`);
@@ -193,12 +187,11 @@ class XmlScan {
     if (this.#tags.length >= MAX_ELEMENTS) {
       throw this.#fault(`more than ${MAX_ELEMENTS} elements (the limit); split the drawing`);
     }
-    const tag: ScannedTag = {
-      name: this.#shared(name),
-      line: this.#line,
-      attributes: this.#attributes(name, this.#name.lastIndex),
-    };
-    const selfClosing = this.#tagEnd.exec(text)?.[1] === '/';
+    const { attributes, end } = this.#attributes(name, this.#name.lastIndex);
+    const tag: ScannedTag = { name: this.#shared(name), line: this.#line, attributes };
+    const close = this.#match(this.#tagEnd, end);
+    if (close === null) throw this.#brokenTag(name, end);
+    const selfClosing = close[1] === '/';
     this.#skeleton.push(`<${skeletonName(name)} k="_${this.#tags.length}"${selfClosing ? '/>' : '>'}`);
     this.#tags.push(tag);
     if (!selfClosing) this.#open.push(tag);
@@ -215,17 +208,18 @@ class XmlScan {
     };
   }
 
-  /** Leaves #tagEnd ready to match at the end of the attributes. */
-  #attributes(tagName: string, from: number): readonly string[] {
-    const text = this.#text;
+  /** And where they end. */
+  #attributes(
+    tagName: string,
+    from: number,
+  ): { readonly attributes: readonly string[]; readonly end: number } {
     const found: string[] = [];
     /** Only for tags with many attributes; a few are compared one by one. */
     let seen: Set<string> | null = null;
     const where = `${this.#where}:${this.#line}`;
     let end = from;
     for (;;) {
-      this.#attribute.lastIndex = end;
-      const match = this.#attribute.exec(text);
+      const match = this.#match(this.#attribute, end);
       if (match === null) break;
       end = this.#attribute.lastIndex;
       const [, written, inDouble, inSingle] = match;
@@ -248,21 +242,15 @@ class XmlScan {
       );
       found.push(name, value);
     }
-    this.#tagEnd.lastIndex = end;
-    if (!this.#tagEnd.test(text)) throw this.#brokenTag(tagName, end);
-    this.#tagEnd.lastIndex = end;
-    return found;
+    return { attributes: found, end };
   }
 
   #brokenTag(tagName: string, at: number): InputError {
-    const text = this.#text;
-    this.#restIsEmpty.lastIndex = at;
-    if (this.#restIsEmpty.test(text)) return this.#cutOff(`<${tagName}>`);
-    this.#attributeStart.lastIndex = at;
-    const unclosed = this.#attributeStart.exec(text)?.[1];
+    if (this.#match(this.#restIsEmpty, at)) return this.#cutOff(`<${tagName}>`);
+    const unclosed = this.#match(this.#attributeStart, at)?.[1];
     if (unclosed !== undefined) return this.#cutOff(`the value of ${unclosed} in <${tagName}>`);
     return this.#fault(
-      `not XML: <${tagName}> cannot be read at ${quoted(text.slice(at, at + 40))}; attributes are written name="value"`,
+      `not XML: <${tagName}> cannot be read at ${quoted(this.#text.slice(at, at + 40))}; attributes are written name="value"`,
     );
   }
 
@@ -286,8 +274,8 @@ class XmlScan {
     this.#texts.push(text);
   }
 
-  #match(pattern: RegExp): RegExpExecArray | null {
-    pattern.lastIndex = this.at;
+  #match(pattern: RegExp, at = this.at): RegExpExecArray | null {
+    pattern.lastIndex = at;
     return pattern.exec(this.#text);
   }
 
@@ -309,10 +297,11 @@ class XmlScan {
   }
 
   #shared(name: string): string {
-    const known = this.#names.get(name);
-    if (known !== undefined) return known;
-    this.#names.set(name, name);
-    return name;
+    return remembered(this.#names, name, () => name);
+  }
+
+  #notXmlHere(what: string): InputError {
+    return this.#fault(`not XML at ${quoted(this.#text.slice(this.at, this.at + 40))}${what}`);
   }
 
   #fault(what: string): InputError {

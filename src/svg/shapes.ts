@@ -1,9 +1,9 @@
 /** The basic shapes as path commands (SVG 2, 10): the same starting points and directions as the specification's. */
-import { parseLength, toUserUnits } from './lengths.ts';
+import { givenLength, readLength } from './lengths.ts';
 import { parsePath, parsePoints } from './path-data.ts';
 import type { PathCommand, ShapeTag } from './types.ts';
 import { quoted, ValueError } from './value-error.ts';
-import type { Viewport } from './viewport.ts';
+import { diagonalOf, type Viewport } from './viewport.ts';
 
 /**
  * @param get a geometry attribute or property as text, or undefined.
@@ -55,19 +55,12 @@ interface Geometry {
 function geometry(get: (name: string) => string | undefined, viewport: Viewport | null): Geometry {
   const whole = (name: string): number | null => {
     if (viewport === null) return null;
-    // SVG 2, 7.11: other lengths refer to the diagonal, √((w² + h²)/2).
-    if (name === 'r') return Math.hypot(viewport.width, viewport.height) / Math.SQRT2;
+    if (name === 'r') return diagonalOf(viewport);
     return /x|width/.test(name) ? viewport.width : viewport.height;
   };
   const read = (name: string): number | undefined => {
-    const text = get(name);
-    if (text === undefined || text.trim() === '' || text.trim().toLowerCase() === 'auto') return undefined;
-    try {
-      return toUserUnits(parseLength(text), whole(name));
-    } catch (cause) {
-      if (!(cause instanceof ValueError)) throw cause;
-      throw new ValueError(`${name}: ${cause.message}`, { cause });
-    }
+    const text = givenLength(get(name));
+    return text === null ? undefined : readLength(name, text, whole(name));
   };
   const size = (name: string): number | undefined => {
     const value = read(name);
@@ -135,9 +128,8 @@ function rectPath({ length, size }: Geometry): readonly PathCommand[] {
 function ellipsePath(tag: 'circle' | 'ellipse', { length, size }: Geometry): readonly PathCommand[] {
   const x = length('cx');
   const y = length('cy');
-  const round = tag === 'circle' ? size('r') : undefined;
-  const rx = round ?? (tag === 'ellipse' ? (size('rx') ?? size('ry') ?? 0) : 0);
-  const ry = round ?? (tag === 'ellipse' ? (size('ry') ?? size('rx') ?? 0) : 0);
+  const rx = (tag === 'circle' ? size('r') : (size('rx') ?? size('ry'))) ?? 0;
+  const ry = tag === 'circle' ? rx : (size('ry') ?? size('rx') ?? 0);
   if (rx === 0 || ry === 0) return [];
   return [
     { kind: 'move', x: x + rx, y },

@@ -9,6 +9,7 @@ import { compile, type Options } from 'css-select';
 import type { Block, CssNode, Rule, Selector } from 'css-tree';
 import parseCss from 'css-tree/parser';
 import { InputError } from '../errors.ts';
+import { grouped } from '../groups.ts';
 import { type Declarations, toDeclarations } from './declarations.ts';
 import { MAX_SELECTOR_STEPS } from './limits.ts';
 import { attribute, type XmlElement } from './tree.ts';
@@ -95,13 +96,9 @@ function readSheet(element: XmlElement, where: string, reading: Reading): void {
 }
 
 /** At-rules that cannot change which strokes are drawn, or where. */
-const HARMLESS_AT_RULES: ReadonlySet<string> = new Set([
-  'charset',
-  'font-face',
-  'namespace',
-  'page',
-  'counter-style',
-]);
+const HARMLESS_AT_RULES: ReadonlySet<string> = new Set(
+  'charset font-face namespace page counter-style'.split(' '),
+);
 
 function appliesOnScreen(query: string): boolean {
   return query.split(',').some((one) => /^(?:(?:only\s+)?(?:all|screen)|not\s+print)?$/i.test(one.trim()));
@@ -172,57 +169,32 @@ function compileSelector(
 
 /** css-select's view of the tree. Every step is counted, because `:nth-child` and `~` on one long row are quadratic. */
 function adapterOptions(budget: Budget): Options<XmlElement, XmlElement> {
-  const spend = (steps: number): void => {
-    budget.stepsLeft -= steps;
-    if (budget.stepsLeft < 0) {
-      throw new InputError(
-        budget.where,
-        `the <style> rules take over ${MAX_SELECTOR_STEPS} steps to match (the limit); use simpler selectors`,
-      );
-    }
+  const visited = (element: XmlElement, more = 0): XmlElement => {
+    budget.stepsLeft -= 1 + more;
+    if (budget.stepsLeft >= 0) return element;
+    throw new InputError(
+      budget.where,
+      `the <style> rules take over ${MAX_SELECTOR_STEPS} steps to match (the limit); use simpler selectors`,
+    );
   };
-  const siblings = (element: XmlElement): readonly XmlElement[] =>
-    element === budget.copyOf ? [element] : (element.parent?.children ?? [element]);
+  const readAttribute = (element: XmlElement, name: string): string | undefined =>
+    attribute(visited(element, element.attributes.length / 2), name);
+  // css-select types rows of elements as mutable arrays and only reads them.
+  const siblings = (element: XmlElement): XmlElement[] =>
+    (element === budget.copyOf ? [element] : (element.parent?.children ?? [element])) as XmlElement[];
   return {
     xmlMode: true,
     adapter: {
-      isTag: (_node): _node is XmlElement => {
-        spend(1);
-        return true;
-      },
-      getAttributeValue: (element, name) => {
-        spend(1 + element.attributes.length / 2);
-        return attribute(element, name);
-      },
-      hasAttrib: (element, name) => {
-        spend(1 + element.attributes.length / 2);
-        return attribute(element, name) !== undefined;
-      },
-      // css-select types these as mutable arrays and only reads them.
-      getChildren: (element) => {
-        spend(1 + element.children.length);
-        return element.children as XmlElement[];
-      },
-      getSiblings: (element) => {
-        spend(1);
-        return siblings(element) as XmlElement[];
-      },
-      prevElementSibling: (element) => {
-        spend(1);
-        return element === budget.copyOf ? null : (siblings(element)[element.index - 1] ?? null);
-      },
-      getName: (element) => {
-        spend(1);
-        return element.name;
-      },
-      getParent: (element) => {
-        spend(1);
-        return element === budget.copyOf ? null : element.parent;
-      },
-      getText: (element) => {
-        spend(1 + element.text.length);
-        return element.text;
-      },
+      isTag: (node): node is XmlElement => visited(node) === node,
+      getAttributeValue: readAttribute,
+      hasAttrib: (element, name) => readAttribute(element, name) !== undefined,
+      getChildren: (element) => visited(element, element.children.length).children as XmlElement[],
+      getSiblings: (element) => siblings(visited(element)),
+      prevElementSibling: (element) =>
+        visited(element) === budget.copyOf ? null : (siblings(element)[element.index - 1] ?? null),
+      getName: (element) => visited(element).name,
+      getParent: (element) => (visited(element) === budget.copyOf ? null : element.parent),
+      getText: (element) => visited(element, element.text.length).text,
       removeSubsets: (nodes) => nodes,
     },
   };
@@ -278,12 +250,7 @@ function fileByKey(
   selectable: readonly Selectable[],
   budget: Budget,
 ): (element: XmlElement, copyOf: XmlElement | null) => readonly SheetRule[] {
-  const byKey = new Map<string, Selectable[]>();
-  for (const one of selectable) {
-    const filed = byKey.get(one.key);
-    if (filed === undefined) byKey.set(one.key, [one]);
-    else filed.push(one);
-  }
+  const byKey = grouped(selectable, ({ key }) => key);
   return (element, copyOf) => {
     budget.copyOf = copyOf;
     const found: Selectable[] = [];

@@ -1,11 +1,11 @@
 /** From specified values to what a shape looks like: inheritance (CSS Cascade 4, 7; SVG 2, 13) and the resolved style. */
-import type { Specified } from './cascade.ts';
-import { parseLength, toUserUnits } from './lengths.ts';
+import { MARKERS, type Specified } from './declarations.ts';
+import { readLength } from './lengths.ts';
 import { toNumber } from './numbers.ts';
 import { paintIsVisible, parseOpacity } from './paint.ts';
 import type { ShapeStyle, ShapeTag } from './types.ts';
 import { quoted, ValueError } from './value-error.ts';
-import type { Viewport } from './viewport.ts';
+import { diagonalOf, type Viewport } from './viewport.ts';
 
 export type Disguise = ShapeStyle['disguises'][number];
 
@@ -82,9 +82,7 @@ export function resolveStyle(
   const linecap = own['stroke-linecap'].toLowerCase();
   const hasMarker =
     (tag === 'path' || tag === 'line' || tag === 'polyline' || tag === 'polygon') &&
-    (['marker-start', 'marker-mid', 'marker-end'] as const).some(
-      (marker) => own[marker].toLowerCase() !== 'none',
-    );
+    MARKERS.some((marker) => own[marker].toLowerCase() !== 'none');
   return {
     stroked,
     filled: inked('fill'),
@@ -97,13 +95,7 @@ export function resolveStyle(
   };
 }
 
-const GLOBAL_KEYWORDS: ReadonlySet<string> = new Set([
-  'inherit',
-  'initial',
-  'unset',
-  'revert',
-  'revert-layer',
-]);
+const GLOBAL_KEYWORDS: ReadonlySet<string> = new Set('inherit initial unset revert revert-layer'.split(' '));
 
 function isInherited(property: string): property is InheritedProperty {
   return Object.hasOwn(INITIAL_STYLE, property);
@@ -118,15 +110,7 @@ function computedValue(property: InheritedProperty, value: string, parent: Inher
 }
 
 function parseStrokeWidth(text: string, viewport: Viewport | null): number {
-  // SVG 2, 7.11: a percentage refers to the viewport's diagonal, √((w² + h²)/2).
-  const diagonal = viewport === null ? null : Math.hypot(viewport.width, viewport.height) / Math.SQRT2;
-  let width: number;
-  try {
-    width = toUserUnits(parseLength(text), diagonal);
-  } catch (cause) {
-    if (!(cause instanceof ValueError)) throw cause;
-    throw new ValueError(`stroke-width: ${cause.message}`, { cause });
-  }
+  const width = readLength('stroke-width', text, viewport && diagonalOf(viewport));
   if (width < 0) throw new ValueError(`stroke-width ${quoted(text)} is negative; write the channel's width`);
   return width;
 }

@@ -64,7 +64,7 @@ const NUMBERS = new RegExp(`\\s*(${NUMBER})\\s*(,?)`, 'y');
 
 /** Plain numbers, in user units and degrees; a sign or a point may stand in for the separator. */
 function attributeFunction(name: string, args: string): Matrix {
-  const fault = (why: string) => new ValueError(`transform ${quoted(`${name}(${args})`)} ${why}`);
+  const fault = faultIn(name, args);
   const values: number[] = [];
   let [end, isCommaLast] = [0, false];
   NUMBERS.lastIndex = 0;
@@ -77,110 +77,118 @@ function attributeFunction(name: string, args: string): Matrix {
   if (rest !== '' || isCommaLast || values.some(Number.isNaN)) {
     throw fault(`cannot be read at ${quoted(rest)}; the attribute takes plain numbers, "translate(10 5)"`);
   }
-  const [a, b, c, d, e, f] = values;
-  const counts = (...allowed: readonly number[]) => {
-    if (!allowed.includes(values.length)) throw fault(`needs ${allowed.join(' or ')} values`);
-  };
-  switch (name) {
-    case 'matrix':
-      counts(6);
-      return [a, b, c, d, e, f];
-    case 'translate':
-      counts(1, 2);
-      return translation(a, b ?? 0);
-    case 'scale':
-      counts(1, 2);
-      return [a, 0, 0, b ?? a, 0, 0];
-    case 'rotate':
-      counts(1, 3);
-      return values.length === 1
-        ? rotation(a)
-        : multiply(multiply(translation(b, c), rotation(a)), translation(-b, -c));
-    case 'skewX':
-      counts(1);
-      return [1, 0, tangent(a), 1, 0, 0];
-    case 'skewY':
-      counts(1);
-      return [1, tangent(a), 0, 1, 0, 0];
-    default:
-      throw fault('is not known; use matrix, translate, scale, rotate, skewX or skewY');
-  }
+  return functionFor(values, ATTRIBUTE_FUNCTIONS.get(name), fault, '').toMatrix(...values);
 }
 
 /** Lengths and angles with their units (a zero needs none), separated by commas. */
 function cssFunction(written: string, args: string, viewport: Viewport | null): Matrix {
+  const fault = faultIn(written, args);
   const parts = args.trim() === '' ? [] : args.trim().split(/\s*,\s*/);
-  const fault = (why: string) => new ValueError(`transform ${quoted(`${written}(${args})`)} ${why}`);
-  const counts = (...allowed: readonly number[]) => {
-    if (!allowed.includes(parts.length)) {
-      throw fault(`needs ${allowed.join(' or ')} values, with commas between them`);
+  const found = CSS_FUNCTIONS.get(written.toLowerCase());
+  const { kinds, toMatrix } = functionFor(parts, found, fault, ', with commas between them');
+  return toMatrix(...parts.map((part, i) => cssValue(part, kinds[i], viewport, fault)));
+}
+
+type Fault = (why: string) => ValueError;
+
+function faultIn(name: string, args: string): Fault {
+  return (why) => new ValueError(`transform ${quoted(`${name}(${args})`)} ${why}`);
+}
+
+function functionFor(
+  values: readonly unknown[],
+  found: TransformFunction | undefined,
+  fault: Fault,
+  hint: string,
+): TransformFunction {
+  if (found === undefined) throw fault('is not known; use matrix, translate, scale, rotate, skewX or skewY');
+  const { counts } = found;
+  if (!counts.includes(values.length)) throw fault(`needs ${counts.join(' or ')} values${hint}`);
+  return found;
+}
+
+interface TransformFunction {
+  /** How many values it may have. */
+  readonly counts: readonly number[];
+  /** What each is in CSS, a length by the side of the viewport that its percentages refer to. */
+  readonly kinds: readonly CssKind[];
+  /** From plain numbers, in user units and degrees. */
+  readonly toMatrix: (...values: readonly number[]) => Matrix;
+}
+
+type CssKind = 'number' | 'factor' | 'angle' | keyof Viewport;
+
+function readAs(
+  counts: readonly number[],
+  kinds: readonly CssKind[],
+  toMatrix: TransformFunction['toMatrix'],
+): TransformFunction {
+  return { counts, kinds, toMatrix };
+}
+
+const SIX_NUMBERS = new Array<CssKind>(6).fill('number');
+const MATRIX = readAs([6], SIX_NUMBERS, (a, b, c, d, e, f) => [a, b, c, d, e, f]);
+const TRANSLATE = readAs([1, 2], ['width', 'height'], (x, y = 0) => translation(x, y));
+const SCALE = readAs([1, 2], ['factor', 'factor'], (x, y = x) => [x, 0, 0, y, 0, 0]);
+const ROTATE = readAs([1], ['angle'], rotation);
+const SKEW_X = readAs([1], ['angle'], (x) => [1, 0, tangent(x), 1, 0, 0]);
+const SKEW_Y = readAs([1], ['angle'], (y) => [1, tangent(y), 0, 1, 0, 0]);
+
+const ATTRIBUTE_FUNCTIONS: ReadonlyMap<string, TransformFunction> = new Map([
+  ['matrix', MATRIX],
+  ['translate', TRANSLATE],
+  ['scale', SCALE],
+  ['rotate', readAs([1, 3], [], rotationAbout)],
+  ['skewX', SKEW_X],
+  ['skewY', SKEW_Y],
+]);
+
+/** By name in lower case. */
+const CSS_FUNCTIONS: ReadonlyMap<string, TransformFunction> = new Map([
+  ['matrix', MATRIX],
+  ['translate', TRANSLATE],
+  ['translatex', readAs([1], ['width'], (x) => translation(x, 0))],
+  ['translatey', readAs([1], ['height'], (y) => translation(0, y))],
+  ['scale', SCALE],
+  ['scalex', readAs([1], ['factor'], (x) => [x, 0, 0, 1, 0, 0])],
+  ['scaley', readAs([1], ['factor'], (y) => [1, 0, 0, y, 0, 0])],
+  ['rotate', ROTATE],
+  ['rotatez', ROTATE],
+  ['skew', readAs([1, 2], ['angle', 'angle'], (x, y = 0) => [1, tangent(y), tangent(x), 1, 0, 0])],
+  ['skewx', SKEW_X],
+  ['skewy', SKEW_Y],
+]);
+
+function cssValue(text: string, kind: CssKind, viewport: Viewport | null, fault: Fault): number {
+  switch (kind) {
+    case 'factor':
+      if (text.endsWith('%')) return parseLength(text).value / 100;
+      return cssValue(text, 'number', viewport, fault);
+    case 'number': {
+      const value = toNumber(text);
+      if (Number.isNaN(value)) throw fault(`cannot be read: ${quoted(text)} is no number`);
+      return value;
     }
-  };
-  const number = (i: number): number => {
-    const value = toNumber(parts[i]);
-    if (Number.isNaN(value)) throw fault(`cannot be read: ${quoted(parts[i])} is no number`);
-    return value;
-  };
-  const factor = (i: number): number =>
-    parts[i].endsWith('%') ? parseLength(parts[i]).value / 100 : number(i);
-  const length = (i: number, whole: number | null): number => {
-    const value = parseLength(parts[i]);
-    if (value.unit === '' && value.value !== 0) {
-      throw fault(`has no unit in CSS, so a browser ignores it; write ${quoted(`${parts[i]}px`)}`);
+    case 'angle': {
+      const match = ANGLE.exec(text);
+      const value = match === null ? Number.NaN : toNumber(match[1]);
+      if (match === null || Number.isNaN(value)) throw fault(`cannot be read: ${quoted(text)} is no angle`);
+      if (match[2] === undefined && value !== 0) throw fault(noUnit(`${text}deg`));
+      return value * DEGREES[(match[2] ?? 'deg').toLowerCase()];
     }
-    return toUserUnits(value, whole);
-  };
-  const angle = (i: number): number => {
-    const match = ANGLE.exec(parts[i]);
-    const value = match === null ? Number.NaN : toNumber(match[1]);
-    if (match === null || Number.isNaN(value)) throw fault(`cannot be read: ${quoted(parts[i])} is no angle`);
-    if (match[2] === undefined && value !== 0) {
-      throw fault(`has no unit in CSS, so a browser ignores it; write ${quoted(`${parts[i]}deg`)}`);
+    case 'width':
+    case 'height': {
+      const length = parseLength(text);
+      if (length.unit === '' && length.value !== 0) throw fault(noUnit(`${text}px`));
+      return toUserUnits(length, viewport?.[kind] ?? null);
     }
-    return value * DEGREES[(match[2] ?? 'deg').toLowerCase()];
-  };
-  const width = viewport?.width ?? null;
-  const height = viewport?.height ?? null;
-  switch (written.toLowerCase()) {
-    case 'matrix':
-      counts(6);
-      return [number(0), number(1), number(2), number(3), number(4), number(5)];
-    case 'translate':
-      counts(1, 2);
-      return translation(length(0, width), parts.length > 1 ? length(1, height) : 0);
-    case 'translatex':
-      counts(1);
-      return translation(length(0, width), 0);
-    case 'translatey':
-      counts(1);
-      return translation(0, length(0, height));
-    case 'scale': {
-      counts(1, 2);
-      const x = factor(0);
-      return [x, 0, 0, parts.length > 1 ? factor(1) : x, 0, 0];
-    }
-    case 'scalex':
-      counts(1);
-      return [factor(0), 0, 0, 1, 0, 0];
-    case 'scaley':
-      counts(1);
-      return [1, 0, 0, factor(0), 0, 0];
-    case 'rotate':
-    case 'rotatez':
-      counts(1);
-      return rotation(angle(0));
-    case 'skew':
-      counts(1, 2);
-      return [1, parts.length > 1 ? tangent(angle(1)) : 0, tangent(angle(0)), 1, 0, 0];
-    case 'skewx':
-      counts(1);
-      return [1, 0, tangent(angle(0)), 1, 0, 0];
-    case 'skewy':
-      counts(1);
-      return [1, tangent(angle(0)), 0, 1, 0, 0];
     default:
-      throw fault('is not known; use matrix, translate, scale, rotate, skewX or skewY');
+      return kind satisfies never;
   }
+}
+
+function noUnit(better: string): string {
+  return `has no unit in CSS, so a browser ignores it; write ${quoted(better)}`;
 }
 
 const ANGLE = new RegExp(`^(${NUMBER})(deg|rad|grad|turn)?$`, 'i');
@@ -200,6 +208,11 @@ function rotation(degrees: number): Matrix {
   const cos = Math.cos(angle);
   const sin = Math.sin(angle);
   return [cos, sin, -sin, cos, 0, 0];
+}
+
+function rotationAbout(degrees: number, x?: number, y = 0): Matrix {
+  if (x === undefined) return rotation(degrees);
+  return multiply(multiply(translation(x, y), rotation(degrees)), translation(-x, -y));
 }
 
 function tangent(degrees: number): number {

@@ -23,10 +23,8 @@ export interface XmlElement {
   readonly text: string;
 }
 
-export interface XmlTree {
+export interface XmlTree extends Pick<ScannedXml, 'foreignSheets'> {
   readonly root: XmlElement;
-  /** Style sheets in other files that the file asks for; none is opened. */
-  readonly foreignSheets: number;
 }
 
 /**
@@ -35,13 +33,7 @@ export interface XmlTree {
  */
 export function readTree(text: string, where: string): XmlTree {
   const scanned = scanXml(text, where);
-  const root = buildTree(parseSkeleton(scanned, where), scanned);
-  if (root === 'too many prefixes') {
-    throw new InputError(
-      where,
-      `more than ${MAX_PREFIXES} prefixes for SVG's namespace; save the drawing as plain SVG`,
-    );
-  }
+  const root = buildTree(parseSkeleton(scanned, where), scanned, where);
   if (root.name !== 'svg' || !root.isSvg) {
     const written = scanned.tags[0].name;
     const why = root.name === 'svg' ? ` in another namespace than ${SVG_NAMESPACE}` : '';
@@ -54,15 +46,13 @@ export function readTree(text: string, where: string): XmlTree {
 }
 
 /** The value of an attribute by its full name, or undefined. */
-export function attribute(element: XmlElement, name: string): string | undefined {
-  const { attributes } = element;
+export function attribute({ attributes }: XmlElement, name: string): string | undefined {
   for (let i = 0; i < attributes.length; i += 2) if (attributes[i] === name) return attributes[i + 1];
   return undefined;
 }
 
 /** The value of the first attribute with this prefix-free name in any prefix: `href` also finds `xlink:href`. */
-export function prefixedAttribute(element: XmlElement, suffix: `:${string}`): string | undefined {
-  const { attributes } = element;
+export function prefixedAttribute({ attributes }: XmlElement, suffix: `:${string}`): string | undefined {
   for (let i = 0; i < attributes.length; i += 2) if (attributes[i].endsWith(suffix)) return attributes[i + 1];
   return undefined;
 }
@@ -81,7 +71,7 @@ interface Growing extends XmlElement {
 }
 
 /** Level by level, because a file may nest deeper than the call stack reaches. */
-function buildTree(parsedRoot: ParsedElement, scanned: ScannedXml): XmlElement | 'too many prefixes' {
+function buildTree(parsedRoot: ParsedElement, scanned: ScannedXml, where: string): XmlElement {
   // A plain <svg> without any xmlns is taken for SVG, as editors and programs do.
   const outside: ReadonlySet<string> = new Set(scanned.tags[0].name === 'svg' ? [''] : []);
   const make = (
@@ -109,7 +99,10 @@ function buildTree(parsedRoot: ParsedElement, scanned: ScannedXml): XmlElement |
   const pending: Pending[] = [root];
   for (let i = 0; i < pending.length; i++) {
     const { parsed, element, prefixes } = pending[i];
-    if (prefixes.size > MAX_PREFIXES) return 'too many prefixes';
+    if (prefixes.size > MAX_PREFIXES) {
+      const what = `more than ${MAX_PREFIXES} prefixes for SVG's namespace`;
+      throw new InputError(where, `${what}; save the drawing as plain SVG`);
+    }
     for (const child of parsed.children) {
       if (typeof child === 'string') continue; // CDATA never reaches svg-parser
       if (child.type === 'text') element.text += textOf(child.value, scanned);

@@ -1,16 +1,19 @@
 /** A 2 × 3 matrix [a b c d e f]: x' = a x + c y + e, y' = b x + d y + f (SVG's order). */
 export type Matrix = readonly [number, number, number, number, number, number];
 
-export type ShapeTag =
-  | 'path'
-  | 'line'
-  | 'polyline'
-  | 'polygon'
-  | 'rect'
-  | 'circle'
-  | 'ellipse'
-  | 'text'
-  | 'image';
+export const SHAPE_TAGS = [
+  'path',
+  'line',
+  'polyline',
+  'polygon',
+  'rect',
+  'circle',
+  'ellipse',
+  'text',
+  'image',
+] as const;
+
+export type ShapeTag = (typeof SHAPE_TAGS)[number];
 
 /** Absolute path commands in the element's own coordinates; arcs stay arcs. */
 export type PathCommand =
@@ -105,7 +108,8 @@ export interface Clip {
   readonly height: number;
 }
 
-export interface SvgDrawing {
+/** How large a drawing is. */
+export interface DrawingScale {
   /** Millimetres per root user unit, by SVG 2's rules. */
   readonly unitMm: number;
   /** False when width/height are in px, unitless, percent or missing, so no physical size is stated. */
@@ -115,6 +119,9 @@ export interface SvgDrawing {
   /** The root viewport's size in mm, null where the drawing gives none. */
   readonly widthMm: number | null;
   readonly heightMm: number | null;
+}
+
+export interface SvgDrawing extends DrawingScale {
   readonly shapes: readonly Shape[];
   /** Named shapes and groups that are not drawn; a group may be listed that also holds what is drawn. */
   readonly undrawn: readonly Undrawn[];

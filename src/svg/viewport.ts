@@ -1,14 +1,19 @@
 /** Viewports, viewBox and preserveAspectRatio (SVG 2, 8.2, 8.6, 8.7), and the size of a user unit. */
-import { type Length, PHYSICAL_UNIT_MM, PX_MM, parseLength, toMillimetres } from './lengths.ts';
+import { givenLength, type Length, PHYSICAL_UNIT_MM, PX_MM, parseLength, toMillimetres } from './lengths.ts';
 import { IDENTITY } from './matrix.ts';
 import { toNumber } from './numbers.ts';
-import type { Matrix } from './types.ts';
+import type { DrawingScale, Matrix } from './types.ts';
 import { quoted, ValueError } from './value-error.ts';
 
 /** What percentages refer to, in user units. */
 export interface Viewport {
   readonly width: number;
   readonly height: number;
+}
+
+/** What a percentage of neither side refers to: the diagonal as SVG 2, 7.11 takes it, √((w² + h²)/2). */
+export function diagonalOf({ width, height }: Viewport): number {
+  return Math.hypot(width, height) / Math.SQRT2;
 }
 
 export interface ViewBox extends Viewport {
@@ -22,12 +27,7 @@ export interface AspectRatio {
   readonly fit: 'meet' | 'slice';
 }
 
-export interface RootScale {
-  readonly unitMm: number;
-  readonly unitStated: boolean;
-  readonly unitReason: string;
-  readonly widthMm: number | null;
-  readonly heightMm: number | null;
+export interface RootScale extends DrawingScale {
   readonly viewport: Viewport | null;
   /** Identity, unless preserveAspectRatio="none" stretches the drawing. */
   readonly toRoot: Matrix;
@@ -54,51 +54,44 @@ function readScale(get: (name: string) => string | undefined): RootScale {
   const width = parseSide(get('width'), 'width');
   const height = parseSide(get('height'), 'height');
   const viewBox = parseViewBox(get('viewBox'));
-  const isPhysical = (side: Side | null): boolean => side?.physical === true;
+  if (viewBox === 'disabled') throw new ValueError('viewBox has no width or height; nothing would be drawn');
+  const [widthMm, heightMm] = [width?.mm ?? null, height?.mm ?? null];
+  const isEitherPhysical = isPhysical(width) || isPhysical(height);
   if (viewBox === null) {
     return {
       unitMm: PX_MM,
-      unitStated: isPhysical(width) || isPhysical(height),
+      unitStated: isEitherPhysical,
       unitReason: `no viewBox: one unit is one CSS px, 25.4/96 mm (${saySides(width, height)})`,
-      widthMm: width?.mm ?? null,
-      heightMm: height?.mm ?? null,
+      widthMm,
+      heightMm,
       viewport:
-        width !== null && height !== null ? { width: width.mm / PX_MM, height: height.mm / PX_MM } : null,
+        widthMm !== null && heightMm !== null ? { width: widthMm / PX_MM, height: heightMm / PX_MM } : null,
       toRoot: IDENTITY,
     };
   }
-  if (viewBox === 'disabled') throw new ValueError('viewBox has no width or height; nothing would be drawn');
   const viewport = { width: viewBox.width, height: viewBox.height };
-  if (width === null && height === null) {
-    return {
-      unitMm: PX_MM,
-      unitStated: false,
-      unitReason: 'no width or height: one unit is taken as one CSS px, 25.4/96 mm',
-      widthMm: null,
-      heightMm: null,
-      viewport,
-      toRoot: IDENTITY,
-    };
-  }
-  const alongX = width === null ? null : width.mm / viewBox.width;
-  const alongY = height === null ? null : height.mm / viewBox.height;
+  const size = { widthMm, heightMm, viewport, toRoot: IDENTITY };
   const byWidth = `width ${width?.text} over viewBox width ${viewBox.width}`;
   const byHeight = `height ${height?.text} over viewBox height ${viewBox.height}`;
+  const alongX = widthMm === null ? null : widthMm / viewBox.width;
+  const alongY = heightMm === null ? null : heightMm / viewBox.height;
   if (alongX === null || alongY === null) {
-    // The missing side follows from the viewBox's shape (CSS: auto with a natural ratio).
-    const unitMm = alongX ?? alongY ?? PX_MM;
+    const unitMm = alongX ?? alongY;
+    if (unitMm === null) {
+      const unitReason = 'no width or height: one unit is taken as one CSS px, 25.4/96 mm';
+      return { ...size, unitMm: PX_MM, unitStated: false, unitReason };
+    }
     return {
+      ...size,
       unitMm,
-      unitStated: isPhysical(width ?? height),
+      unitStated: isEitherPhysical,
       unitReason: width !== null ? byWidth : byHeight,
-      widthMm: width?.mm ?? unitMm * viewBox.width,
-      heightMm: height?.mm ?? unitMm * viewBox.height,
-      viewport,
-      toRoot: IDENTITY,
+      // The missing side follows from the viewBox's shape (CSS: auto with a natural ratio).
+      widthMm: widthMm ?? unitMm * viewBox.width,
+      heightMm: heightMm ?? unitMm * viewBox.height,
     };
   }
   const agree = Math.abs(alongX - alongY) <= 1e-6 * Math.max(alongX, alongY);
-  const size = { widthMm: width?.mm ?? null, heightMm: height?.mm ?? null, viewport };
   const { align, fit } = parseAspectRatio(get('preserveAspectRatio'));
   if (align === 'none' && !agree) {
     return {
@@ -113,10 +106,13 @@ function readScale(get: (name: string) => string | undefined): RootScale {
   return {
     ...size,
     unitMm: takesWidth ? alongX : alongY,
-    unitStated: agree ? isPhysical(width) || isPhysical(height) : isPhysical(takesWidth ? width : height),
+    unitStated: agree ? isEitherPhysical : isPhysical(takesWidth ? width : height),
     unitReason: takesWidth ? byWidth : byHeight,
-    toRoot: IDENTITY,
   };
+}
+
+function isPhysical(side: Side | null): boolean {
+  return side?.physical === true;
 }
 
 /**
@@ -179,8 +175,8 @@ interface Side {
 
 /** Null when the side is not given, or only as a part of a page that is not known. */
 function parseSide(text: string | undefined, name: string): Side | null {
-  const written = text?.trim() ?? '';
-  if (written === '' || written.toLowerCase() === 'auto') return null;
+  const written = givenLength(text);
+  if (written === null) return null;
   let length: Length;
   try {
     length = parseLength(written);

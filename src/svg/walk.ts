@@ -4,8 +4,9 @@
  * Cost: linear in the elements drawn; `use` may draw one element often, so the drawn elements are counted and bounded.
  */
 import { InputError } from '../errors.ts';
-import type { Cascade, Specified } from './cascade.ts';
-import { parseLength, toUserUnits } from './lengths.ts';
+import type { Cascade } from './cascade.ts';
+import type { Specified } from './declarations.ts';
+import { givenLength, parseLength, toUserUnits } from './lengths.ts';
 import { MAX_COPIES, MAX_ELEMENTS, MAX_GROUP_NAMES, MAX_PATH_COMMANDS } from './limits.ts';
 import { multiply, translation } from './matrix.ts';
 import { drawnId, MAX_NAME, nameAsDrawn, nameAsWritten, nameOf } from './names.ts';
@@ -21,7 +22,17 @@ import {
 import { parseTransform, parseTransformOrigin } from './transform.ts';
 import { attribute, prefixedAttribute, type XmlElement } from './tree.ts';
 import { refuseEscapedTwins } from './twins.ts';
-import type { Clip, Group, Matrix, PathCommand, Shape, ShapeStyle, ShapeTag, Undrawn } from './types.ts';
+import {
+  type Clip,
+  type Group,
+  type Matrix,
+  type PathCommand,
+  SHAPE_TAGS,
+  type Shape,
+  type ShapeStyle,
+  type ShapeTag,
+  type Undrawn,
+} from './types.ts';
 import { quoted, ValueError } from './value-error.ts';
 import { parseAspectRatio, parseViewBox, type Viewport, viewBoxTransform } from './viewport.ts';
 
@@ -86,18 +97,6 @@ interface Frame {
   readonly context: Context;
 }
 
-const SHAPE_TAGS: ReadonlySet<string> = new Set<ShapeTag>([
-  'path',
-  'line',
-  'polyline',
-  'polygon',
-  'rect',
-  'circle',
-  'ellipse',
-  'text',
-  'image',
-]);
-
 /** Elements that are never drawn where they stand (SVG 2, 5.1.4 and the descriptive elements): nothing is lost with them. */
 const NEVER_DRAWN: ReadonlySet<string> = new Set(
   (
@@ -114,6 +113,15 @@ const UNREAD: ReadonlySet<string> = new Set(
   ).split(' '),
 );
 
+/** What is counted over the whole drawing, and the most of it. */
+const LIMITS = {
+  elements: { most: MAX_ELEMENTS, what: 'elements' },
+  copies: { most: MAX_COPIES, what: 'elements that use draws again' },
+  commands: { most: MAX_PATH_COMMANDS, what: 'path commands' },
+};
+
+type Counted = keyof typeof LIMITS;
+
 /** Attributes that CSS knows as properties too (SVG 2, 7 and 9.3.2); those of lines and polygons are none. */
 const GEOMETRY_PROPERTIES: ReadonlySet<string> = new Set('x y width height cx cy r rx ry d'.split(' '));
 
@@ -121,8 +129,6 @@ const GEOMETRY_PROPERTIES: ReadonlySet<string> = new Set('x y width height cx cy
 type PassedOver = string | null;
 
 const NO_GROUPS: readonly Group[] = [];
-
-const NO_CLIPS: readonly Clip[] = [];
 
 class Walk {
   readonly shapes: Shape[] = [];
@@ -135,10 +141,8 @@ class Walk {
   readonly #where: string;
   readonly #frames: Frame[] = [];
   readonly #open = new Set<XmlElement>();
-  #visits = 0;
-  #copies = 0;
-  #commands = 0;
   #groupNames = 0;
+  readonly #counts: Record<Counted, number> = { elements: 0, copies: 0, commands: 0 };
   /** Paths of elements that `use` draws again, with the viewport that their percentages referred to. */
   readonly #paths = new Map<
     XmlElement,
@@ -160,7 +164,7 @@ class Walk {
     const depth = attribute(root, 'data-depth') ?? null;
     const chain =
       depth === null ? null : { group: { name: null, dataDepth: depth }, outer: null, list: null };
-    this.#push(root, root.children, { ...surroundings, chain, use: null, copyOf: null, clips: NO_CLIPS });
+    this.#push(root, root.children, { ...surroundings, chain, use: null, copyOf: null, clips: [] });
   }
 
   leave(frame: Frame): void {
@@ -169,13 +173,8 @@ class Walk {
   }
 
   enter(element: XmlElement, context: Context): void {
-    this.#visit(1, element);
-    if (context.copyOf !== null && ++this.#copies > MAX_COPIES) {
-      throw this.#fault(
-        element,
-        `the drawing has more than ${MAX_COPIES} elements that use draws again (the limit); split it`,
-      );
-    }
+    this.#count('elements', 1, element);
+    if (context.copyOf !== null) this.#count('copies', 1, element);
     if (!element.isSvg) return;
     try {
       const passedOver = this.#draw(element, context);
@@ -194,7 +193,7 @@ class Walk {
       if (context.copyOf === null) this.#passOver(element, `it stands in <${name}>, where nothing is drawn`);
       return null;
     }
-    const isShape = SHAPE_TAGS.has(name);
+    const isShape = isShapeTag(name);
     const isContainer = name === 'g' || name === 'a' || name === 'svg' || name === 'switch' || name === 'use';
     if (!isShape && !isContainer && !isSymbolInUse) return 'unknown element';
 
@@ -220,8 +219,7 @@ class Walk {
     }
     const disguises = addDisguises(context.disguises, specified);
     const inner: Context = { ...context, toRoot, style, disguises };
-    // SHAPE_TAGS holds ShapeTags only.
-    if (isShape) return this.#drawShape(element, name as ShapeTag, css, specified, inner);
+    if (isShape) return this.#drawShape(element, name, css, specified, inner);
     return this.#drawContainer(element, css, specified, inner);
   }
 
@@ -242,13 +240,7 @@ class Walk {
       this.#passOverShape(element, context.use, 'it has no size');
       return 'shape without size';
     }
-    this.#commands += path.length;
-    if (this.#commands > MAX_PATH_COMMANDS) {
-      throw this.#fault(
-        element,
-        `the drawing has more than ${MAX_PATH_COMMANDS} path commands (the limit); split it`,
-      );
-    }
+    this.#count('commands', path.length, element);
     const { use } = context;
     const written = (use && nameAsWritten(use)) ?? nameAsWritten(element);
     const shape: Shape = {
@@ -280,10 +272,10 @@ class Walk {
     const pending = [element];
     for (let one = pending.pop(); one !== undefined; one = pending.pop()) {
       if (!one.isSvg) continue;
-      const kind = SHAPE_TAGS.has(one.name) || one.name === 'use' ? 'shape' : 'group';
+      const kind = isShapeTag(one.name) || one.name === 'use' ? 'shape' : 'group';
       if (kind === 'shape' || one.name === 'g' || one.name === 'svg' || one.name === 'symbol')
         this.#addUndrawn(kind, nameAsDrawn(one), why);
-      this.#visit(one.children.length, one);
+      this.#count('elements', one.children.length, one);
       for (let i = one.children.length - 1; i >= 0; i--) pending.push(one.children[i]);
     }
   }
@@ -303,7 +295,7 @@ class Walk {
 
   /** The first child that can be drawn here. */
   #chosen(element: XmlElement): readonly XmlElement[] {
-    this.#visit(element.children.length, element);
+    this.#count('elements', element.children.length, element);
     const chosen = element.children.find(
       (child) =>
         child.isSvg &&
@@ -325,7 +317,7 @@ class Walk {
     refuseCssSize(css, 'width', 'height');
     const x = side(element, css, 'x', context.viewport) ?? 0;
     const y = side(element, css, 'y', context.viewport) ?? 0;
-    const isShape = SHAPE_TAGS.has(target.name);
+    const isShape = isShapeTag(target.name);
     // A use that draws one shape stands for the shape, and so is no group of its own.
     const depth = attribute(element, 'data-depth') ?? null;
     const chain = isShape ? context.chain : this.#extend(context.chain, element, depth);
@@ -412,20 +404,18 @@ class Walk {
     for (let link: GroupChain | null = chain; link !== null; link = link.outer) list.push(link.group);
     this.#groupNames += list.length;
     if (this.#groupNames > MAX_GROUP_NAMES) {
-      throw this.#fault(
-        element,
-        `its groups nest too deep: over ${MAX_GROUP_NAMES} group names (the limit); ungroup some`,
-      );
+      const what = `its groups nest too deep: over ${MAX_GROUP_NAMES} group names (the limit)`;
+      throw this.#fault(element, `${what}; ungroup some`);
     }
     chain.list = list.reverse();
     return chain.list;
   }
 
-  #visit(count: number, element: XmlElement): void {
-    this.#visits += count;
-    if (this.#visits > MAX_ELEMENTS) {
-      throw this.#fault(element, `the drawing has more than ${MAX_ELEMENTS} elements (the limit); split it`);
-    }
+  #count(counted: Counted, count: number, element: XmlElement): void {
+    this.#counts[counted] += count;
+    const { most, what } = LIMITS[counted];
+    if (this.#counts[counted] <= most) return;
+    throw this.#fault(element, `the drawing has more than ${most} ${what} (the limit); split it`);
   }
 
   #fault(element: XmlElement, what: string, cause?: unknown): InputError {
@@ -433,6 +423,12 @@ class Walk {
     const said = name === null ? `<${element.name}>` : `<${element.name}> ${quoted(name)}`;
     return new InputError(`${this.#where}:${element.line}`, `${said}: ${what}`, { cause });
   }
+}
+
+const SHAPES: ReadonlySet<string> = new Set(SHAPE_TAGS);
+
+function isShapeTag(name: string): name is ShapeTag {
+  return SHAPES.has(name);
 }
 
 /**
@@ -488,12 +484,10 @@ function side(
   name: 'x' | 'y' | 'width' | 'height',
   viewport: Viewport | null,
 ): number | null {
-  const text = (css?.get(name) ?? attribute(element, name))?.trim() ?? '';
-  if (text === '' || text.toLowerCase() === 'auto') return null;
-  return toUserUnits(
-    parseLength(text),
-    viewport?.[name === 'x' || name === 'width' ? 'width' : 'height'] ?? null,
-  );
+  const text = givenLength(css?.get(name) ?? attribute(element, name));
+  if (text === null) return null;
+  const whole = name === 'x' || name === 'width' ? 'width' : 'height';
+  return toUserUnits(parseLength(text), viewport?.[whole] ?? null);
 }
 
 function decodeFragment(fragment: string): string {

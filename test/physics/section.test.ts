@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
-import { ductForm, floorShareInside, floorShearAt } from '../../src/physics/duct.ts';
+import { ductForm, floorShareInside } from '../../src/physics/duct.ts';
 import { isotropicFloorMean, isotropicSection } from '../../src/physics/section.ts';
+import { floorShearAt } from './wall-shear.ts';
 
 describe('an isotropic etch', () => {
   it('keeps area and perimeter: mask·h + πh²/2, and walls at mask + 2h', () => {

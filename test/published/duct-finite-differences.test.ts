@@ -1,6 +1,7 @@
 /** An independent oracle: five-point finite differences of the duct, extrapolated, at four aspect ratios. */
 import { describe, expect, it } from 'vitest';
-import { ductForm, floorShearAt } from '../../src/physics/duct.ts';
+import { ductForm } from '../../src/physics/duct.ts';
+import { floorShearAt } from '../physics/wall-shear.ts';
 import type { RectangleSolution } from './finite-differences.ts';
 import { solveRectangle } from './finite-differences.ts';
 

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import type { DuctForm } from '../../src/physics/duct.ts';
-import { ductForm, floorShearAt, resistancePerLength } from '../../src/physics/duct.ts';
+import { ductForm, resistancePerLength } from '../../src/physics/duct.ts';
+import { floorShearAt } from '../physics/wall-shear.ts';
 
 /** Fanning friction factor × Reynolds on the hydraulic diameter: G D_h²/(2 µ u_mean). */
 function frictionReynolds(form: DuctForm): number {
