@@ -1,7 +1,7 @@
 import { drivesOf, type PortDrive } from '../solve/drives.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
-import { nearMisses } from './misses.ts';
-import { partsOnDrawing } from './parts.ts';
+import { nearMisses, sidesOf } from './misses.ts';
+import { channelMember, partsOnDrawing } from './parts.ts';
 import { loosePortSet } from './ports.ts';
 import { tipsOf } from './tips.ts';
 
@@ -65,13 +65,9 @@ function stateOf(
   const { portNode } = context.network;
   const ports = partPorts.filter((port) => drives[port].kind !== 'none');
   const holes = new Set(ports.map((port) => portNode[port]));
-  const held = new Set<number>();
-  let hasFlow = false;
-  for (const port of ports) {
-    const drive = drives[port];
-    if (drive.kind === 'pressure') held.add(drive.pressurePa);
-    if (drive.kind === 'flow') hasFlow = true;
-  }
+  const given = ports.map((port) => drives[port]);
+  const held = new Set(given.flatMap((drive) => (drive.kind === 'pressure' ? drive.pressurePa : [])));
+  const hasFlow = given.some(({ kind }) => kind === 'flow');
   const kind =
     ports.length === 0
       ? 'stray'
@@ -86,11 +82,10 @@ function stateOf(
 }
 
 function planesOf(context: FindingContext, part: number): Set<number> {
-  const { pieces } = context.network.trace.near;
+  const { plane } = context.network.trace.near.pieces;
   const { firstPiece, pieceOf } = partsOnDrawing(context);
-  const planes = new Set<number>();
-  for (let k = firstPiece[part]; k < firstPiece[part + 1]; k++) planes.add(pieces.plane[pieceOf[k]]);
-  return planes;
+  const own = pieceOf.subarray(firstPiece[part], firstPiece[part + 1]);
+  return new Set(own.map((piece) => plane[piece]));
 }
 
 /** A well that no channel comes to is a loose port, and nothing more need be said of it. */
@@ -133,12 +128,9 @@ function isCutOff(context: FindingContext, all: readonly PartState[], one: PartS
 
 /** Parts with an end that stands dead, or at which something is just missed. */
 const standsDead = oncePerContext((context): ReadonlySet<number> => {
-  const { ofCentreline, ofPort } = partsOnDrawing(context);
   const parts = new Set<number>();
-  for (const { ends, kind } of tipsOf(context)) if (kind === 'end') parts.add(ofCentreline[ends[0] >> 1]);
-  for (const { centreline, missed, port } of nearMisses(context)) {
-    parts.add(ofCentreline[centreline]);
-    parts.add(port >= 0 ? ofPort[port] : ofCentreline[missed]);
-  }
+  for (const { ends, kind } of tipsOf(context))
+    if (kind === 'end') parts.add(channelMember(context, ends[0] >> 1).part);
+  for (const miss of nearMisses(context)) for (const { part } of sidesOf(context, miss)) parts.add(part);
   return parts;
 });

@@ -37,17 +37,14 @@ function toDeadPort(context: FindingContext, dead: DeadPart): Finding {
   const first = ports[dead.ports[0]];
   const names = dead.ports.map((port) => ports[port].name);
   const gap = gapOfDeadPart(context).get(dead.part) ?? null;
+  const atGap = gap === null || gap.stopsShort === null ? null : gap;
   return toFinding('dead-port', dead.severity, {
     message: `${whatIsDead(context, dead)}; ${gap === null ? noGapText(context, dead) : `the nearest gap is ${gapText(gap)}`}`,
     fix: `${wayOut(context, dead, gap)}; if it is meant to stand still, accept dead-port at ${keyText(first.name)}`,
-    at: gap !== null && gap.stopsShort !== null ? gap : { xMm: first.xMm, yMm: first.yMm },
+    at: atGap ?? first,
     names: [...new Set([...names, ...(gap === null ? [] : [gap.from, gap.to])])],
-    ...(gap !== null && gap.stopsShort !== null ? { mark: toMark(gap) } : {}),
+    mark: atGap?.mark ?? null,
   });
-}
-
-function toMark({ mark: [x1Mm, y1Mm, x2Mm, y2Mm] }: Gap): NonNullable<Finding['mark']> {
-  return { x1Mm, y1Mm, x2Mm, y2Mm };
 }
 
 function noGapText(context: FindingContext, { part }: DeadPart): string {

@@ -1,3 +1,5 @@
+import { piecesNear } from '../geometry/near.ts';
+import { placeOn } from '../geometry/on-piece.ts';
 import {
   COARSE_SHARE,
   commonOutline,
@@ -8,16 +10,17 @@ import {
   pieceOutline,
   type Rounds,
 } from '../geometry/outline.ts';
-import type { Pieces } from '../geometry/pieces.ts';
+import { directionOf, neighbourPiece, type Pieces } from '../geometry/pieces.ts';
 import { isInPieceStrip } from '../geometry/strip.ts';
 import { lieAlong } from '../network/meetings.ts';
 import { closestPoints, type Line } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
-import { endMeets } from './end-meets.ts';
+import { endMeets, hasPlaceOn } from './meets.ts';
 import { portsNear } from './near-ports.ts';
 import { lineOf } from './painted.ts';
 import { channelPaths } from './paths.ts';
-import { coveredLength, type Facing, groupStretches } from './stretches.ts';
+import { coveredLength, extentOf, type Facing, groupStretches, type Wall } from './stretches.ts';
+import { endPlace } from './tips.ts';
 
 /**
  * One etched area is one network: where two strips of a plane overlap, or two stretches of one more than four widths
@@ -30,34 +33,13 @@ import { coveredLength, type Facing, groupStretches } from './stretches.ts';
  * Cost: linear in the near pairs. Nearly all of them meet in a node at the place where they are nearest; only the rest is
  * looked at in outline.
  */
-export interface UnjoinedArea {
-  readonly pieceA: number;
-  readonly pieceB: number;
-  readonly centrelineA: number;
-  readonly centrelineB: number;
-  /** Extent on centreline A and on B, mm. */
-  readonly fromA: number;
-  readonly toA: number;
-  readonly fromB: number;
-  readonly toB: number;
-  /** Length of overlap along A, mm. */
-  readonly lengthMm: number;
-  /** How far the two overlap, mm; negative, as a wall that is not there. */
-  readonly gapMm: number;
-  /** Across the overlap where it is widest. */
-  readonly mark: Line;
-}
-
-/** All overlaps that nothing joins, one for each place. */
-export const unjoinedAreas: (context: FindingContext) => readonly UnjoinedArea[] = oncePerContext(
-  (context) => {
-    const unjoined = overlapsOf(context).unjoined();
-    return groupStretches(
-      unjoined.map((overlap) => toFaced(context, overlap)),
-      ({ bridgeMm }) => bridgeMm,
-    ).map(toArea);
-  },
-);
+export const unjoinedAreas: (context: FindingContext) => readonly Wall[] = oncePerContext((context) => {
+  const { pieces } = context.network.trace.near;
+  const faced = overlapsOf(context)
+    .unjoined()
+    .map((overlap) => toFaced(pieces, overlap));
+  return groupStretches(faced, ({ bridgeMm }) => bridgeMm).map(toWall);
+});
 
 /** Whether a place on piece i and one on piece j lie in one third strip that both pieces are joined to there. */
 export function liesInThird(
@@ -120,7 +102,7 @@ class Overlaps {
         this.open.set(k, null);
         continue;
       }
-      if (this.isLeftOutWhole(i, j) || this.meetInWell(i, j, common)) continue;
+      if (this.isLeftOutWhole(i, j) || this.isLeftOutWhole(j, i) || this.meetInWell(i, j, common)) continue;
       this.open.set(k, { i, j, common, joined: false });
     }
     return this.all();
@@ -180,16 +162,19 @@ class Overlaps {
 
   /** Pieces that may overlap both: what goes on from them, and what comes near the one of them that has fewer neighbours. */
   private thirdsOf(i: number, j: number): number[] {
-    const { firstPair, pairOf, pairA, pairB } = this.context.network.trace.near;
-    const thirds = [...besides(this.pieces, i), ...besides(this.pieces, j)].filter((k) => k !== i && k !== j);
-    const fewer = firstPair[i + 1] - firstPair[i] <= firstPair[j + 1] - firstPair[j] ? i : j;
-    const last = Math.min(firstPair[fewer + 1], firstPair[fewer] + MOST_NEIGHBOURS);
-    for (let m = firstPair[fewer]; m < last; m++) {
-      const pair = pairOf[m];
-      const k = pairA[pair] === fewer ? pairB[pair] : pairA[pair];
-      if (k !== i && k !== j) thirds.push(k);
-    }
-    return thirds;
+    const { near } = this.context.network.trace;
+    const fewer = this.fewer(i, j);
+    return [
+      ...besides(this.pieces, i),
+      ...besides(this.pieces, j),
+      ...piecesNear(near, fewer, MOST_NEIGHBOURS),
+    ].filter((k) => k !== i && k !== j);
+  }
+
+  /** The one of two pieces that has fewer neighbours. */
+  private fewer(i: number, j: number): number {
+    const { firstPair } = this.context.network.trace.near;
+    return firstPair[i + 1] - firstPair[i] <= firstPair[j + 1] - firstPair[j] ? i : j;
   }
 
   private isJoined(i: number, k: number): boolean {
@@ -205,7 +190,8 @@ class Overlaps {
   /** Index of the near pair of two pieces, −1 when they are none. */
   private pairOf(i: number, j: number): number {
     const { firstPair, pairOf, pairA, pairB } = this.context.network.trace.near;
-    const [own, other] = firstPair[i + 1] - firstPair[i] <= firstPair[j + 1] - firstPair[j] ? [i, j] : [j, i];
+    const own = this.fewer(i, j);
+    const other = own === i ? j : i;
     for (let m = firstPair[own]; m < firstPair[own + 1]; m++) {
       const pair = pairOf[m];
       if (pairA[pair] === other || pairB[pair] === other) return pair;
@@ -265,9 +251,7 @@ class Overlaps {
     const { arcFrom, arcTo, firstArc } = this.context.network.trace;
     const along = Math.min(pieces.centrelineLength[pieces.centreline[i]], Math.max(0, s)) - pieces.start[i];
     if (along < -slackMm || along > pieces.length[i] + slackMm) return false;
-    const share = along / pieces.length[i];
-    const x = pieces.x1[i] + share * (pieces.x2[i] - pieces.x1[i]);
-    const y = pieces.y1[i] + share * (pieces.y2[i] - pieces.y1[i]);
+    const { x, y } = placeOn(pieces, i, along / pieces.length[i]);
     if (!isInPieceStrip(pieces, j, x, y, slackMm, null)) return false;
     const c = pieces.centreline[j];
     const t = pieces.start[j] + alongPiece(pieces, j, x, y);
@@ -289,20 +273,18 @@ class Overlaps {
 
   /** A stroke that the joining rules left out whole has no node: it is joined where it was to be carried on. */
   private isLeftOutWhole(i: number, j: number): boolean {
-    return this.isLeftOutOf(i, j) || this.isLeftOutOf(j, i);
-  }
-
-  private isLeftOutOf(i: number, j: number): boolean {
     const { pieces, slackMm } = this;
-    const { firstArc } = this.context.network.trace;
+    const { network } = this.context;
+    const { firstArc } = network.trace;
     const c = pieces.centreline[i];
     if (firstArc[c + 1] > firstArc[c]) return false;
     return [2 * c, 2 * c + 1].some((end) => {
-      if (!endMeets(this.context.network, end, pieces.centreline[j])) return false;
-      const piece = end === 2 * c ? pieces.firstPiece[c] : pieces.firstPiece[c + 1] - 1;
-      if (piece !== i) return false;
-      const [x, y] = end === 2 * c ? [pieces.x1[i], pieces.y1[i]] : [pieces.x2[i], pieces.y2[i]];
-      return isInPieceStrip(pieces, j, x, y, slackMm, null);
+      const { piece, x, y } = endPlace(network, end);
+      return (
+        piece === i &&
+        endMeets(network, end, pieces.centreline[j]) &&
+        isInPieceStrip(pieces, j, x, y, slackMm, null)
+      );
     });
   }
 
@@ -316,16 +298,8 @@ class Overlaps {
       const { xMm, yMm, radiusMm } = chip.ports[p];
       if (distanceToOutline(common, xMm, yMm) > radiusMm + this.slackMm) return false;
       const node = network.portNode[p];
-      return this.hasPlace(node, i) && this.hasPlace(node, j);
+      return [i, j].every((piece) => hasPlaceOn(network, node, this.pieces.centreline[piece]));
     });
-  }
-
-  private hasPlace(node: number, piece: number): boolean {
-    const { firstPlace, placeCentreline } = this.context.network.trace;
-    for (let k = firstPlace[node]; k < firstPlace[node + 1]; k++) {
-      if (placeCentreline[k] === this.pieces.centreline[piece]) return true;
-    }
-    return false;
   }
 }
 
@@ -372,22 +346,12 @@ function reachOnto(pieces: Pieces, i: number, j: number): readonly [number, numb
 
 /** The pieces before and after one on its centreline. */
 function besides(pieces: Pieces, i: number): number[] {
-  const c = pieces.centreline[i];
-  const first = pieces.firstPiece[c];
-  const last = pieces.firstPiece[c + 1] - 1;
-  const closed = pieces.centrelineClosed[c] === 1;
-  const found: number[] = [];
-  if (i > first) found.push(i - 1);
-  else if (closed && last > first) found.push(last);
-  if (i < last) found.push(i + 1);
-  else if (closed && last > first) found.push(first);
-  return found;
+  return [neighbourPiece(pieces, i, -1), neighbourPiece(pieces, i, 1)].filter((k) => k >= 0);
 }
 
 /** Distance along a piece, within it, of the place nearest to a point. */
 function alongPiece(pieces: Pieces, i: number, x: number, y: number): number {
-  const dx = (pieces.x2[i] - pieces.x1[i]) / pieces.length[i];
-  const dy = (pieces.y2[i] - pieces.y1[i]) / pieces.length[i];
+  const [dx, dy] = directionOf(pieces, i);
   return Math.min(pieces.length[i], Math.max(0, (x - pieces.x1[i]) * dx + (y - pieces.y1[i]) * dy));
 }
 
@@ -399,8 +363,7 @@ interface Faced extends Facing {
   readonly bridgeMm: number;
 }
 
-function toFaced({ network }: FindingContext, overlap: Overlap): Faced {
-  const { pieces } = network.trace.near;
+function toFaced(pieces: Pieces, overlap: Overlap): Faced {
   const { i, j } = overlap;
   const common = commonIn(pieces, i, j, 'fine');
   const { widthMm, nx, ny } = leastWidth(common);
@@ -433,26 +396,12 @@ function extentOn(pieces: Pieces, i: number, outline: Outline): readonly [number
   return [low, high];
 }
 
-function toArea(group: readonly Faced[]): UnjoinedArea {
-  let widest = group[0];
-  let toA = Number.NEGATIVE_INFINITY;
-  let fromB = Number.POSITIVE_INFINITY;
-  let toB = Number.NEGATIVE_INFINITY;
-  for (const faced of group) {
-    if (faced.widthMm > widest.widthMm) widest = faced;
-    toA = Math.max(toA, faced.to);
-    fromB = Math.min(fromB, faced.otherFrom, faced.otherTo);
-    toB = Math.max(toB, faced.otherFrom, faced.otherTo);
-  }
+function toWall(group: readonly Faced[]): Wall {
+  const widest = group.reduce((most, faced) => (faced.widthMm > most.widthMm ? faced : most));
   return {
     pieceA: widest.overlap.i,
     pieceB: widest.overlap.j,
-    centrelineA: widest.a,
-    centrelineB: widest.b,
-    fromA: group[0].from,
-    toA,
-    fromB,
-    toB,
+    ...extentOf(group),
     lengthMm: coveredLength(group.map(({ from, to }) => [from, to])),
     gapMm: -widest.widthMm,
     mark: widest.mark,

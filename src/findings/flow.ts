@@ -1,6 +1,8 @@
 import { reachName } from '../network/names.ts';
+import { largestMagnitude } from '../runsheet/shown.ts';
 import type { FindingContext } from './context.ts';
 import { deadPartAt } from './dead-parts.ts';
+import { reachesAtNodes } from './openings.ts';
 import { middleOfReach, othersText, reachesOf, reachNames, worstReach } from './reaches.ts';
 import { found, isBelow, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
@@ -75,20 +77,10 @@ const NO_FLOW_SHARE = 1e-9;
  * 1 for each reach from which every way on ends dead: nodes that are no driving port and have one reach left are taken
  * off, with that reach, until there are none.
  */
-function onTheWayToADeadEnd({ network, run }: FindingContext): Uint8Array {
+function onTheWayToADeadEnd(context: FindingContext): Uint8Array {
+  const { network, run } = context;
   const { nodeCount, reachCount, reachFrom, reachTo, nodePort } = network;
-  const first = new Int32Array(nodeCount + 1);
-  for (let r = 0; r < reachCount; r++) {
-    first[reachFrom[r] + 1]++;
-    first[reachTo[r] + 1]++;
-  }
-  for (let n = 0; n < nodeCount; n++) first[n + 1] += first[n];
-  const fill = first.slice(0, nodeCount);
-  const reachesAt = new Int32Array(2 * reachCount);
-  for (let r = 0; r < reachCount; r++) {
-    reachesAt[fill[reachFrom[r]]++] = r;
-    reachesAt[fill[reachTo[r]]++] = r;
-  }
+  const { first, member } = reachesAtNodes(context);
   const left = new Int32Array(nodeCount);
   for (let n = 0; n < nodeCount; n++) left[n] = first[n + 1] - first[n];
   const isDead = new Uint8Array(reachCount);
@@ -102,7 +94,7 @@ function onTheWayToADeadEnd({ network, run }: FindingContext): Uint8Array {
   for (let n = 0; n < nodeCount; n++) if (isLeaf(n)) leaves.push(n);
   for (let node = leaves.pop(); node !== undefined; node = leaves.pop()) {
     for (let k = first[node]; k < first[node + 1]; k++) {
-      const reach = reachesAt[k];
+      const reach = member[k] >> 1;
       if (isDead[reach] === 1) continue;
       isDead[reach] = 1;
       for (const end of [reachFrom[reach], reachTo[reach]]) {
@@ -135,8 +127,7 @@ function backflow(context: FindingContext): RuleOutcome {
   if (!chip.ports.some((_, p) => isAsked(p))) {
     return notRun('backflow', 'the flow at no port that says what it is for is known');
   }
-  let largest = 0;
-  for (const value of flow.portFlow) if (Math.abs(value) > largest) largest = Math.abs(value);
+  const largest = largestMagnitude(flow.portFlow);
   const show = showFor(context);
   const findings: Finding[] = [];
   chip.ports.forEach(({ name, xMm, yMm }, p) => {

@@ -1,23 +1,16 @@
 import type { Obstacle } from '../chip/types.ts';
+import { grouped } from '../groups.ts';
 import type { FindingContext } from './context.ts';
-import { found, type Rule, toFinding } from './rule.ts';
+import { type Rule, rule, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
 import { countText, listText } from './words.ts';
 
 /** Drawn areas in a channel that are no ports: the model knows nothing of them. */
-export const obstacleRules: readonly Rule[] = [
-  { names: ['obstacle'], run: (context) => found(obstacles(context)) },
-];
+export const obstacleRules: readonly Rule[] = [rule('obstacle', obstacles)];
 
 /** One finding per channel for what stands in it, and one for what lies across its walls. */
 function obstacles({ chip }: FindingContext): Finding[] {
-  const groups = new Map<string, Obstacle[]>();
-  for (const obstacle of chip.obstacles) {
-    const key = `${obstacle.channel} ${obstacle.inside}`;
-    const group = groups.get(key);
-    if (group === undefined) groups.set(key, [obstacle]);
-    else group.push(obstacle);
-  }
+  const groups = grouped(chip.obstacles, ({ channel, inside }) => `${channel} ${inside}`);
   return [...groups.values()].map((group) => {
     const [first] = group;
     const { name } = chip.channels[first.channel];

@@ -1,11 +1,12 @@
-import type { Pieces } from '../geometry/pieces.ts';
-import { closestPoints, type Line, stretchWithin } from './closest.ts';
+import { placeOn } from '../geometry/on-piece.ts';
+import { directionOf, type Pieces } from '../geometry/pieces.ts';
+import { closestPoints, pointLine, stretchWithin } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
-import { endMeets } from './end-meets.ts';
 import { onlyGrows } from './growth.ts';
+import { endMeets } from './meets.ts';
 import { lineOf } from './painted.ts';
 import { isAbove } from './rule.ts';
-import { type Facing, groupStretches } from './stretches.ts';
+import { extentOf, type Facing, groupStretches } from './stretches.ts';
 
 /** Two centrelines, or two stretches of one, drawn along each other as if they were one channel. */
 export interface DoubleStroke {
@@ -62,10 +63,8 @@ function addAlong(into: Along[], pieces: Pieces, i: number, j: number, distanceM
   if (distanceMm > withinMm || isAbove(wideMm, 2 * narrowMm)) return;
   const one = lineOf(pieces, i);
   const two = lineOf(pieces, j);
-  const ux = (one[2] - one[0]) / pieces.length[i];
-  const uy = (one[3] - one[1]) / pieces.length[i];
-  const vx = (two[2] - two[0]) / pieces.length[j];
-  const vy = (two[3] - two[1]) / pieces.length[j];
+  const [ux, uy] = directionOf(pieces, i);
+  const [vx, vy] = directionOf(pieces, j);
   if (Math.abs(ux * vy - uy * vx) > ALONG_SINE * (1 + 1e-9)) return;
   const within = stretchWithin(one, two, withinMm);
   if (within === null) return;
@@ -77,11 +76,8 @@ function addAlong(into: Along[], pieces: Pieces, i: number, j: number, distanceM
   const from = Math.max(within[0], Math.min(atStart, atEnd));
   const to = Math.min(within[1], Math.max(atStart, atEnd));
   if (to - from <= SAME_PLACE_MM) return;
-  const apart = (s: number): number => {
-    const x = one[0] + ux * s;
-    const y = one[1] + uy * s;
-    return closestPoints([x, y, x, y], two).distanceMm;
-  };
+  const apart = (s: number): number =>
+    closestPoints(pointLine(one[0] + ux * s, one[1] + uy * s), two).distanceMm;
   const closest = closestPoints(one, two);
   const leastAt = Math.min(to, Math.max(from, Math.hypot(closest.x1 - one[0], closest.y1 - one[1])));
   into.push({
@@ -135,10 +131,10 @@ function toDoubleStroke(
   group: readonly Along[],
 ): DoubleStroke | null {
   const { a, b, limitMm } = group[0];
-  let from = group[0].from;
-  let to = group.reduce((most, along) => Math.max(most, along.to), from);
+  const extent = extentOf(group);
+  let { fromA: from } = extent;
+  let { toA: to } = extent;
   if (!isAbove(to - from, limitMm)) return null;
-  const [lowB, highB] = extentOnB(group);
   const samples = group.flatMap((along) => [
     { s: along.from, apart: along.apartFrom },
     { s: along.leastAt, apart: along.apartLeast },
@@ -151,8 +147,8 @@ function toDoubleStroke(
     meets.push(...samples.filter(({ apart }) => apart <= chip.joinWithinMm).map(({ s }) => s));
   }
   if (meets.length > 0) {
-    const first = Math.min(...extremes(meets));
-    const last = Math.max(...extremes(meets));
+    const first = meets.reduce((least, s) => Math.min(least, s));
+    const last = meets.reduce((most, s) => Math.max(most, s));
     const after = samples.filter(({ s }) => s >= last).map(({ s, apart }) => ({ way: s - last, apart }));
     const before = samples.filter(({ s }) => s <= first).map(({ s, apart }) => ({ way: first - s, apart }));
     const partsAfter = !endsThere(to) && onlyGrows(after, limitMm, chip.joinWithinMm);
@@ -164,7 +160,7 @@ function toDoubleStroke(
   const middle = (from + to) / 2;
   const at = group.find((along) => along.to >= middle) ?? group[0];
   const share = (Math.min(at.to, Math.max(at.from, middle)) - pieces.start[at.i]) / pieces.length[at.i];
-  const [x1, y1, x2, y2]: Line = lineOf(pieces, at.i);
+  const { x, y } = placeOn(pieces, at.i, share);
   return {
     a,
     b,
@@ -173,8 +169,8 @@ function toDoubleStroke(
     lengthMm: to - from,
     limitMm,
     apartMm: samples.reduce((most, { s, apart }) => (s >= from && s <= to ? Math.max(most, apart) : most), 0),
-    xMm: x1 + share * (x2 - x1),
-    yMm: y1 + share * (y2 - y1),
+    xMm: x,
+    yMm: y,
   };
 
   /** Positions on a of ends of either stroke that were carried on to the other: they meet in a node there. */
@@ -201,26 +197,6 @@ function toDoubleStroke(
     );
     if (facing === undefined) return false;
     const other = Math.abs(facing.to - s) <= slack ? facing.otherTo : facing.otherFrom;
-    return isEnd(b, other) && (other - lowB <= slack || highB - other <= slack);
+    return isEnd(b, other) && (other - extent.fromB <= slack || extent.toB - other <= slack);
   }
-}
-
-function extentOnB(group: readonly Along[]): readonly [number, number] {
-  let low = Number.POSITIVE_INFINITY;
-  let high = Number.NEGATIVE_INFINITY;
-  for (const { otherFrom, otherTo } of group) {
-    low = Math.min(low, otherFrom, otherTo);
-    high = Math.max(high, otherFrom, otherTo);
-  }
-  return [low, high];
-}
-
-function extremes(values: readonly number[]): readonly [number, number] {
-  let low = values[0];
-  let high = values[0];
-  for (const value of values) {
-    low = Math.min(low, value);
-    high = Math.max(high, value);
-  }
-  return [low, high];
 }

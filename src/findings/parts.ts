@@ -1,3 +1,5 @@
+import { byGroup } from '../groups.ts';
+import { channelOf } from './centrelines.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 
 /** Which connected part of the network each drawn thing belongs to; −1 for none. */
@@ -21,18 +23,8 @@ export const partsOnDrawing: (context: FindingContext) => PartsOnDrawing = onceP
           ofCentreline[c] = flow.nodePart[network.reachFrom[arcReach[firstArc[c]]]];
       }
     }
-    const firstPiece = new Int32Array((flow?.parts.length ?? 0) + 1);
-    for (let i = 0; i < pieces.count; i++) {
-      const part = ofCentreline[pieces.centreline[i]];
-      if (part >= 0) firstPiece[part + 1]++;
-    }
-    for (let p = 1; p < firstPiece.length; p++) firstPiece[p] += firstPiece[p - 1];
-    const fill = firstPiece.slice();
-    const pieceOf = new Int32Array(firstPiece[firstPiece.length - 1]);
-    for (let i = 0; i < pieces.count; i++) {
-      const part = ofCentreline[pieces.centreline[i]];
-      if (part >= 0) pieceOf[fill[part]++] = i;
-    }
+    const ofPiece = pieces.centreline.map((c) => ofCentreline[c]);
+    const { first: firstPiece, member: pieceOf } = byGroup(flow?.parts.length ?? 0, ofPiece);
     return {
       ofCentreline,
       ofPort: Int32Array.from(network.portNode, (node) => (flow === null ? -1 : flow.nodePart[node])),
@@ -41,3 +33,19 @@ export const partsOnDrawing: (context: FindingContext) => PartsOnDrawing = onceP
     };
   },
 );
+
+/** A channel or a well, and the connected part that it belongs to. */
+export interface PartMember {
+  readonly part: number;
+  readonly name: string;
+}
+
+/** The channel of a centreline. */
+export function channelMember(context: FindingContext, centreline: number): PartMember {
+  const part = partsOnDrawing(context).ofCentreline[centreline];
+  return { part, name: channelOf(context.network, centreline).name };
+}
+
+export function portMember(context: FindingContext, port: number): PartMember {
+  return { part: partsOnDrawing(context).ofPort[port], name: context.chip.ports[port].name };
+}

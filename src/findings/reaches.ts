@@ -1,26 +1,14 @@
+import { byGroup } from '../groups.ts';
 import { reachName } from '../network/names.ts';
 import type { Network } from '../network/types.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 
-/** Reaches of each channel in drawn order: those of channel c are of[first[c]] … of[first[c + 1] − 1]. */
-interface ChannelReaches {
-  readonly first: Int32Array;
-  readonly of: Int32Array;
-}
-
-const byChannel = oncePerContext(({ network, chip }): ChannelReaches => {
-  const first = new Int32Array(chip.channels.length + 1);
-  for (let c = 0; c < chip.channels.length; c++) first[c + 1] = first[c] + network.channelReachCount[c];
-  const of = new Int32Array(network.reachCount);
-  for (let r = 0; r < network.reachCount; r++)
-    of[first[network.reachChannel[r]] + network.reachNumber[r] - 1] = r;
-  return { first, of };
-});
+const byChannel = oncePerContext(({ network, chip }) => byGroup(chip.channels.length, network.reachChannel));
 
 /** The reaches of one channel, in drawn order. */
 export function reachesOf(context: FindingContext, channel: number): Int32Array {
-  const { first, of } = byChannel(context);
-  return of.subarray(first[channel], first[channel + 1]);
+  const { first, member } = byChannel(context);
+  return member.subarray(first[channel], first[channel + 1]);
 }
 
 /** The worst reach of a channel by some measure, and how many reaches are at fault. */
@@ -74,14 +62,10 @@ export function othersText({ network, chip }: FindingContext, { reach, faulty }:
 }
 
 /** Middle of a reach along its centreline, mm. */
-export function middleOfReach(
-  network: Network,
-  reach: number,
-): { readonly xMm: number; readonly yMm: number } {
-  const first = network.firstSegment[reach];
-  const end = network.firstSegment[reach + 1];
+export function middleOfReach(network: Network, reach: number) {
   let total = 0;
-  for (let s = first; s < end; s++) total += lengthOf(network, s);
+  for (let s = network.firstSegment[reach]; s < network.firstSegment[reach + 1]; s++)
+    total += lengthOf(network, s);
   return alongReach(network, reach, total / 2);
 }
 

@@ -1,4 +1,5 @@
-import type { Channel } from '../chip/types.ts';
+import type { Channel, Chip, Sourced } from '../chip/types.ts';
+import { grouped } from '../groups.ts';
 import { reachName } from '../network/names.ts';
 import { meanRoofRise, risenResistanceFactor } from '../physics/roof.ts';
 import { formatNumber, formatShare } from '../runsheet/shown.ts';
@@ -14,6 +15,7 @@ import {
   notRun,
   type Rule,
   type RuleOutcome,
+  rule,
   toFinding,
   withoutLimit,
 } from './rule.ts';
@@ -32,94 +34,82 @@ import {
 
 /** A channel's own section: can it be made, does its roof stay up, does its relief stand. */
 export const sectionRules: readonly Rule[] = [
-  limitRule(
-    'narrow-channel',
-    'min_width',
-    ({ run }) => run.limits.minWidthM,
-    ({ chip }, limit) =>
-      perChannel(chip.channels, (channel) => {
-        const { name, drawnWidthMm } = channel;
-        const limitMm = limit.value * 1e3;
-        if (!isBelow(drawnWidthMm, limitMm)) return null;
-        const at = middleOfChannel(channel);
-        const drawn = channel.profile === 'isotropic' ? 'mask opening' : 'channel';
-        return toFinding('narrow-channel', 'blocker', {
-          message: `${name} is drawn ${distanceText(drawnWidthMm)} wide; the narrowest ${drawn} is ${limitText(distanceText(limitMm), limit)}`,
-          fix: `draw ${name} with a stroke width of ${leastText(limitMm)} or more`,
-          at,
-          names: [name],
-          measure: { value: drawnWidthMm / 1e3, limit: limit.value, unit: 'm' },
-          ...(at === null ? {} : { mark: acrossMark(at, drawnWidthMm) }),
-        });
-      }),
+  limitRule('narrow-channel', 'min_width', 'minWidthM', ({ chip }, limit) =>
+    chip.channels.flatMap((channel) => narrowChannel(channel, limit) ?? []),
   ),
-  limitRule(
-    'roof-span',
-    'max_width_to_depth',
-    ({ run }) => run.limits.maxWidthToDepth,
-    ({ chip }, limit) =>
-      perChannel(chip.channels, (channel, c) => {
-        const { name, ductWidthMm, depthMm } = channel;
-        if (!isAbove(ductWidthMm / depthMm, limit.value)) return null;
-        const pillars = chip.obstacles.filter(({ channel: its, inside }) => its === c && inside);
-        // An isotropic etch widens the way between pillars as it widens the channel.
-        const free = pillars.length === 0 ? null : freeSpan(channel, pillars, chip.ports);
-        const spanMm = free === null ? ductWidthMm : ductWidthMm - channel.drawnWidthMm + free.spanMm;
-        const ratio = spanMm / depthMm;
-        if (!isAbove(ratio, limit.value)) return null;
-        const severity = isAbove(ratio, 2 * limit.value) ? 'blocker' : 'caution';
-        // The place of the widest room is known to its size, not to a point: it is told, and the channel's middle marked.
-        const at = middleOfChannel(channel);
-        const drawnAtMost = channel.drawnWidthMm - (ductWidthMm - limit.value * depthMm);
-        const between =
-          free === null ? '' : ` between its ${countText(pillars.length, 'pillar')}${widestText(free)}`;
-        const closer = pillars.length === 0 ? '' : 'set its pillars closer, ';
-        const narrower = drawnAtMost > 0 ? `narrow ${name} to ${sizeAtMostText(drawnAtMost)}, ` : '';
-        return toFinding('roof-span', severity, {
-          message: `the roof of ${name}${between} spans ${formatNumber(ratio)} times its depth (${distanceText(spanMm)} over ${distanceText(depthMm)}) and may sag; the limit is ${limitText(`${formatNumber(limit.value)} times`, limit)}`,
-          fix: `${closer}${narrower}etch it ${leastText(spanMm / limit.value)} deep or deeper, or split it into narrower lanes`,
-          at,
-          names: [name],
-          measure: { value: ratio, limit: limit.value, unit: '' },
-          ...(at === null ? {} : { mark: acrossMark(at, 2 * channel.stripHalfWidthMm) }),
-        });
-      }),
+  limitRule('roof-span', 'max_width_to_depth', 'maxWidthToDepth', ({ chip }, limit) =>
+    chip.channels.flatMap((_, channel) => roofSpan(chip, channel, limit) ?? []),
   ),
-  limitRule(
-    'tall-wall',
-    'max_depth_to_width',
-    ({ run }) => run.limits.maxDepthToWidth,
-    ({ chip }, limit) =>
-      perChannel(chip.channels, (channel) => {
-        const { name, ductWidthMm, depthMm } = channel;
-        const ratio = depthMm / ductWidthMm;
-        if (!isAbove(ratio, limit.value)) return null;
-        const at = middleOfChannel(channel);
-        const wider = channel.drawnWidthMm + depthMm / limit.value - ductWidthMm;
-        return toFinding('tall-wall', 'caution', {
-          message: `${name} is ${formatNumber(ratio)} times as deep as wide (${distanceText(depthMm)} by ${distanceText(ductWidthMm)}); the limit is ${limitText(`${formatNumber(limit.value)} times`, limit)}`,
-          fix: `draw ${name} ${leastText(wider)} wide or wider, or etch it at most ${mostText(limit.value * ductWidthMm)} deep`,
-          at,
-          names: [name],
-          measure: { value: ratio, limit: limit.value, unit: '' },
-          ...(at === null ? {} : { mark: acrossMark(at, 2 * channel.stripHalfWidthMm) }),
-        });
-      }),
+  limitRule('tall-wall', 'max_depth_to_width', 'maxDepthToWidth', ({ chip }, limit) =>
+    chip.channels.flatMap((channel) => tallWall(channel, limit) ?? []),
   ),
   { names: ['soft-walls'], run: softWalls },
-  { names: ['isotropic-etch'], run: (context) => found(isotropicEtch(context)) },
+  rule('isotropic-etch', isotropicEtch),
 ];
+
+/** A fault of all of a channel is shown across its middle. */
+function acrossMiddle(channel: Channel, widthMm: number) {
+  const at = middleOfChannel(channel);
+  return { at, names: [channel.name], mark: at && acrossMark(at, widthMm) };
+}
+
+function narrowChannel(channel: Channel, limit: Sourced<number>): Finding | null {
+  const { name, drawnWidthMm } = channel;
+  const limitMm = limit.value * 1e3;
+  if (!isBelow(drawnWidthMm, limitMm)) return null;
+  const drawn = channel.profile === 'isotropic' ? 'mask opening' : 'channel';
+  return toFinding('narrow-channel', 'blocker', {
+    message: `${name} is drawn ${distanceText(drawnWidthMm)} wide; the narrowest ${drawn} is ${limitText(distanceText(limitMm), limit)}`,
+    fix: `draw ${name} with a stroke width of ${leastText(limitMm)} or more`,
+    ...acrossMiddle(channel, drawnWidthMm),
+    measure: { value: drawnWidthMm / 1e3, limit: limit.value, unit: 'm' },
+  });
+}
+
+function roofSpan(chip: Chip, c: number, limit: Sourced<number>): Finding | null {
+  const channel = chip.channels[c];
+  const { name, ductWidthMm, drawnWidthMm, depthMm } = channel;
+  if (!isAbove(ductWidthMm / depthMm, limit.value)) return null;
+  const pillars = chip.obstacles.filter(({ channel: its, inside }) => its === c && inside);
+  // An isotropic etch widens the way between pillars as it widens the channel.
+  const free = pillars.length === 0 ? null : freeSpan(channel, pillars, chip.ports);
+  const spanMm = free === null ? ductWidthMm : ductWidthMm - drawnWidthMm + free.spanMm;
+  const ratio = spanMm / depthMm;
+  if (!isAbove(ratio, limit.value)) return null;
+  const drawnAtMost = drawnWidthMm - (ductWidthMm - limit.value * depthMm);
+  const between =
+    free === null ? '' : ` between its ${countText(pillars.length, 'pillar')}${widestText(free)}`;
+  const closer = pillars.length === 0 ? '' : 'set its pillars closer, ';
+  const narrower = drawnAtMost > 0 ? `narrow ${name} to ${sizeAtMostText(drawnAtMost)}, ` : '';
+  return toFinding('roof-span', isAbove(ratio, 2 * limit.value) ? 'blocker' : 'caution', {
+    message: `the roof of ${name}${between} spans ${formatNumber(ratio)} times its depth (${distanceText(spanMm)} over ${distanceText(depthMm)}) and may sag; the limit is ${timesText(limit)}`,
+    fix: `${closer}${narrower}etch it ${leastText(spanMm / limit.value)} deep or deeper, or split it into narrower lanes`,
+    // The place of the widest room is known to its size, not to a point: it is told, and the channel's middle marked.
+    ...acrossMiddle(channel, 2 * channel.stripHalfWidthMm),
+    measure: { value: ratio, limit: limit.value, unit: '' },
+  });
+}
+
+function tallWall(channel: Channel, limit: Sourced<number>): Finding | null {
+  const { name, ductWidthMm, depthMm } = channel;
+  const ratio = depthMm / ductWidthMm;
+  if (!isAbove(ratio, limit.value)) return null;
+  const wider = channel.drawnWidthMm + depthMm / limit.value - ductWidthMm;
+  return toFinding('tall-wall', 'caution', {
+    message: `${name} is ${formatNumber(ratio)} times as deep as wide (${distanceText(depthMm)} by ${distanceText(ductWidthMm)}); the limit is ${timesText(limit)}`,
+    fix: `draw ${name} ${leastText(wider)} wide or wider, or etch it at most ${mostText(limit.value * ductWidthMm)} deep`,
+    ...acrossMiddle(channel, 2 * channel.stripHalfWidthMm),
+    measure: { value: ratio, limit: limit.value, unit: '' },
+  });
+}
+
+function timesText(limit: Sourced<number>): string {
+  return limitText(`${formatNumber(limit.value)} times`, limit);
+}
 
 function widestText({ xMm, yMm }: FreeSpan): string {
   const near = (mm: number): number => Math.round(mm * 10) / 10;
   return Number.isNaN(xMm) ? '' : `, where it is widest, near ${placeText(near(xMm), near(yMm))},`;
-}
-
-function perChannel(
-  channels: readonly Channel[],
-  look: (channel: Channel, index: number) => Finding | null,
-): Finding[] {
-  return channels.map(look).filter((finding) => finding !== null);
 }
 
 /** Rise of the roof over the depth above which flow and shear are off by more than a reader would expect. */
@@ -193,13 +183,10 @@ function softWalls(context: FindingContext): RuleOutcome {
 
 /** One finding per layer: everyone who reads the drawing must know that the etch is wider than the mask. */
 function isotropicEtch({ chip }: FindingContext): Finding[] {
-  const byLayer = new Map<number, Channel[]>();
-  for (const channel of chip.channels) {
-    if (channel.profile !== 'isotropic' || Number.isNaN(channel.depthMm)) continue;
-    const group = byLayer.get(channel.layer);
-    if (group === undefined) byLayer.set(channel.layer, [channel]);
-    else group.push(channel);
-  }
+  const etched = chip.channels.filter(
+    ({ profile, depthMm }) => profile === 'isotropic' && !Number.isNaN(depthMm),
+  );
+  const byLayer = grouped(etched, ({ layer }) => layer);
   return [...byLayer].map(([layer, channels]) => {
     const [first] = channels;
     const { name } = chip.layers[layer];

@@ -1,38 +1,23 @@
 import { LIMIT_SLACK } from '../chip/limits.ts';
+import type { Chip } from '../chip/types.ts';
 import type { Nearness } from '../geometry/near.ts';
-import { neighbourPiece, type Pieces } from '../geometry/pieces.ts';
-import { distanceToSegment } from '../geometry/segment.ts';
+import { distanceToPiece, placeOn, sineBetween } from '../geometry/on-piece.ts';
+import { directionOf, neighbourPiece, type Pieces } from '../geometry/pieces.ts';
 import { isInPieceStrip } from '../geometry/strip.ts';
-import { closestPoints, type Line, stretchWithin } from './closest.ts';
+import { closestPoints, type Line, lineBetween, pointLine, stretchWithin } from './closest.ts';
 import type { FindingContext } from './context.ts';
 import { liesInThird } from './etched-area.ts';
 import { onlyGrows } from './growth.ts';
 import { gapBetween, hasFlatEnd, lineOf } from './painted.ts';
 import { channelPaths, pointOn, type Route, routeLength } from './paths.ts';
-import { coveredLength, type Facing, groupStretches } from './stretches.ts';
+import { coveredLength, extentOf, type Facing, groupStretches, type Wall } from './stretches.ts';
 
 /**
  * Where two channels, or two stretches of one, leave less material between them than a limit, at places further apart
  * along the channels than 4 × (mean width + limit). Nearer than that they are one duct turning or two that part.
  */
-export interface ThinWall {
-  /** Pieces at the thinnest place. */
-  readonly pieceA: number;
-  readonly pieceB: number;
-  readonly centrelineA: number;
-  readonly centrelineB: number;
-  /** Extent on centreline A and on B, mm. */
-  readonly fromA: number;
-  readonly toA: number;
-  readonly fromB: number;
-  readonly toB: number;
-  /** Length of thin wall along A, mm. */
-  readonly lengthMm: number;
-  /** Thinnest material; 0 or less where the painted areas touch or overlap. */
-  readonly gapMm: number;
+export interface ThinWall extends Wall {
   readonly limitMm: number;
-  /** Wall points that face each other at the thinnest place. */
-  readonly mark: Line;
 }
 
 /** One pair of pieces' share of a thin wall. */
@@ -71,8 +56,10 @@ export function findThinWalls(
     const i = near.pairA[k];
     const j = near.pairB[k];
     const limitMm = limitOf(pieces.channel[i], pieces.channel[j]);
-    if (Number.isNaN(limitMm)) continue;
-    addThinStretches(stretches, context, pieces, i, j, near.pairDistance[k], limitMm);
+    const faced = Number.isNaN(limitMm)
+      ? null
+      : facedWalls(context, pieces, i, j, near.pairDistance[k], limitMm);
+    if (faced !== null) addThinStretches(stretches, context, faced);
   }
   return groupStretches(stretches, ({ apartMm }) => apartMm / 2)
     .filter((group) => !isNoWall(context, group))
@@ -187,153 +174,140 @@ function shortest(routes: readonly Route[], s: number, t: number): Route | null 
 }
 
 function toThinWall({ chip }: FindingContext, pieces: Pieces, group: readonly ThinStretch[]): ThinWall {
-  let thinnest = group[0];
-  let fromB = Number.POSITIVE_INFINITY;
-  let toB = Number.NEGATIVE_INFINITY;
-  let toA = Number.NEGATIVE_INFINITY;
-  for (const stretch of group) {
-    if (stretch.gapMm < thinnest.gapMm) thinnest = stretch;
-    fromB = Math.min(fromB, stretch.otherFrom, stretch.otherTo);
-    toB = Math.max(toB, stretch.otherFrom, stretch.otherTo);
-    toA = Math.max(toA, stretch.to);
-  }
+  const gapMm = group.reduce((least, stretch) => Math.min(least, stretch.gapMm), Number.POSITIVE_INFINITY);
+  let thinnest = group.find((stretch) => stretch.gapMm === gapMm) ?? group[0];
   // Equally thin for long: the middle of the longest such stretch is where to look.
-  const least = thinnest.gapMm + 1e-9;
   for (const stretch of group) {
-    if (stretch.gapMm <= least && stretch.to - stretch.from > thinnest.to - thinnest.from + 1e-6)
+    if (stretch.gapMm <= gapMm + 1e-9 && stretch.to - stretch.from > thinnest.to - thinnest.from + 1e-6)
       thinnest = stretch;
   }
-  const { i, j, gapMm, limitMm } = thinnest;
   return {
-    pieceA: i,
-    pieceB: j,
-    centrelineA: thinnest.a,
-    centrelineB: thinnest.b,
-    fromA: group[0].from,
-    toA,
-    fromB,
-    toB,
+    pieceA: thinnest.i,
+    pieceB: thinnest.j,
+    ...extentOf(group),
     lengthMm: coveredLength(group.map(({ thinFrom, thinTo }) => [thinFrom, thinTo])),
-    gapMm,
-    limitMm,
-    mark: markAt(chip.channels[pieces.channel[i]].linecap !== 'round'),
+    gapMm: thinnest.gapMm,
+    limitMm: thinnest.limitMm,
+    mark: markAt(chip, pieces, thinnest),
   };
-
-  function markAt(mayBeFlat: boolean): Line {
-    const { thinnestAt } = thinnest;
-    const t = Math.min(1, Math.max(0, (thinnestAt - pieces.start[i]) / pieces.length[i]));
-    const px = pieces.x1[i] + t * (pieces.x2[i] - pieces.x1[i]);
-    const py = pieces.y1[i] + t * (pieces.y2[i] - pieces.y1[i]);
-    const c = closestPoints([px, py, px, py], lineOf(pieces, j));
-    if (c.distanceMm === 0) return [px, py, px, py];
-    if (mayBeFlat && c.distanceMm - pieces.half[i] - pieces.half[j] < gapMm - 1e-9) {
-      const exact = gapBetween(chip, pieces, i, j);
-      return [exact.x1, exact.y1, exact.x2, exact.y2];
-    }
-    const ux = (c.x2 - c.x1) / c.distanceMm;
-    const uy = (c.y2 - c.y1) / c.distanceMm;
-    return [
-      c.x1 + ux * pieces.half[i],
-      c.y1 + uy * pieces.half[i],
-      c.x2 - ux * pieces.half[j],
-      c.y2 - uy * pieces.half[j],
-    ];
-  }
 }
 
-/** Two straight pieces nearer than the limit: the part of the first that is thin and far enough along the channels. */
-function addThinStretches(
-  into: ThinStretch[],
-  context: FindingContext,
+/** From wall to wall at the thinnest place of a stretch. */
+function markAt(chip: Chip, pieces: Pieces, { i, j, gapMm, thinnestAt }: ThinStretch): Line {
+  const { half } = pieces;
+  const t = Math.min(1, Math.max(0, (thinnestAt - pieces.start[i]) / pieces.length[i]));
+  const { x, y } = placeOn(pieces, i, t);
+  const { distanceMm, x1, y1, x2, y2 } = closestPoints(pointLine(x, y), lineOf(pieces, j));
+  if (distanceMm === 0) return pointLine(x, y);
+  const mayBeFlat = chip.channels[pieces.channel[i]].linecap !== 'round';
+  if (mayBeFlat && distanceMm - half[i] - half[j] < gapMm - 1e-9)
+    return lineBetween(gapBetween(chip, pieces, i, j));
+  const ux = (x2 - x1) / distanceMm;
+  const uy = (y2 - y1) / distanceMm;
+  return [x1 + ux * half[i], y1 + uy * half[i], x2 - ux * half[j], y2 - uy * half[j]];
+}
+
+/** Two straight pieces nearer than the limit, and what one sees of the other. */
+interface FacedWalls {
+  readonly pieces: Pieces;
+  readonly i: number;
+  readonly j: number;
+  readonly limitMm: number;
+  readonly apartMm: number;
+  /** Extent on i of what is thin, and where the two are nearest; positions on i's centreline. */
+  readonly thinFrom: number;
+  readonly thinTo: number;
+  readonly nearestAt: number;
+  /** Material between painted ends that face each other, mm; −∞ where that between the pieces tells. */
+  readonly exactMm: number;
+  /** Cosine of the angle between the two, and where i's first point lies along j, mm. */
+  readonly slope: number;
+  readonly offset: number;
+}
+
+/** Null where the two are no wall, whatever else is near. */
+function facedWalls(
+  { chip }: FindingContext,
   pieces: Pieces,
   i: number,
   j: number,
   distanceMm: number,
   limitMm: number,
-): void {
-  const { chip } = context;
-  const halves = pieces.half[i] + pieces.half[j];
+): FacedWalls | null {
+  const { half, start, length } = pieces;
+  const halves = half[i] + half[j];
   // The relative slack of a limit, rounding of coordinates where the limit is nought, and what curves may lie beside their
   // pieces: a wall round a bend drawn exactly at the limit is not below it.
-  const withinMm =
-    halves +
-    limitMm * (1 - LIMIT_SLACK) -
-    (limitMm === 0 ? -1e-9 * halves : 0) -
-    pieces.bulge[i] -
-    pieces.bulge[j];
+  const roundingMm = limitMm === 0 ? -1e-9 * halves : 0;
+  const withinMm = halves + limitMm * (1 - LIMIT_SLACK) - roundingMm - pieces.bulge[i] - pieces.bulge[j];
   const flat = hasFlatEnd(chip, pieces, i) || hasFlatEnd(chip, pieces, j);
-  if (!flat && distanceMm >= withinMm) return;
-  if (distanceMm <= chip.joinWithinMm && crossesSquarely(pieces, i, j)) return;
+  if (!flat && distanceMm >= withinMm) return null;
+  if (distanceMm <= chip.joinWithinMm && Math.abs(sineBetween(pieces, i, j)) >= SQUARE_SINE) return null;
+  const apartMm = 4 * (halves + limitMm);
+  const isOwn = pieces.centreline[i] === pieces.centreline[j];
+  if (isOwn && start[j] + length[j] - start[i] <= apartMm) return null;
+  const one = lineOf(pieces, i);
+  const two = lineOf(pieces, j);
+  const { x1, y1, x2, y2 } = closestPoints(one, two);
+  // Half a width round the centreline is the painted area but for the square ends: where these face, they are measured.
+  const areFaced = flat && distanceMm > 0 && (isAtEnd(one, x1, y1) || isAtEnd(two, x2, y2));
+  const exactMm = areFaced ? gapBetween(chip, pieces, i, j).distanceMm : Number.NEGATIVE_INFINITY;
+  if (areFaced ? exactMm >= withinMm - halves : distanceMm >= withinMm) return null;
+  const nearestAt = start[i] + Math.hypot(x1 - one[0], y1 - one[1]);
+  const thin = stretchWithin(one, two, withinMm);
+  const [ux, uy] = directionOf(pieces, i);
+  const [vx, vy] = directionOf(pieces, j);
+  return {
+    pieces,
+    i,
+    j,
+    limitMm,
+    apartMm,
+    thinFrom: thin === null ? nearestAt : start[i] + thin[0],
+    thinTo: thin === null ? nearestAt : start[i] + thin[1],
+    nearestAt,
+    exactMm,
+    slope: ux * vx + uy * vy,
+    offset: (one[0] - two[0]) * vx + (one[1] - two[1]) * vy,
+  };
+}
+
+/** The position on j's centreline that a position on i's faces. */
+function facing({ pieces, i, j, slope, offset }: FacedWalls, s: number): number {
+  return pieces.start[j] + Math.min(pieces.length[j], Math.max(0, offset + slope * (s - pieces.start[i])));
+}
+
+/** Material between the two at a position on i's centreline, mm. */
+function gapAt({ pieces, i, j, exactMm }: FacedWalls, s: number): number {
+  const [ux, uy] = directionOf(pieces, i);
+  const t = s - pieces.start[i];
+  const distanceMm = distanceToPiece(pieces, j, pieces.x1[i] + ux * t, pieces.y1[i] + uy * t);
+  return Math.max(distanceMm - (pieces.half[i] + pieces.half[j]), exactMm);
+}
+
+/** The parts of the first piece that are thin and far enough along the channels. */
+function addThinStretches(into: ThinStretch[], context: FindingContext, faced: FacedWalls): void {
+  const { pieces, i, j, limitMm, apartMm, nearestAt, slope } = faced;
   const a = pieces.centreline[i];
   const b = pieces.centreline[j];
-  const apartMm = 4 * (halves + limitMm);
-  if (a === b && pieces.start[j] + pieces.length[j] - pieces.start[i] <= apartMm) return;
-  const lineI = lineOf(pieces, i);
-  const lineJ = lineOf(pieces, j);
-  const closest = closestPoints(lineI, lineJ);
-  // Half a width round the centreline is the painted area but for the square ends: where these face, they are measured.
-  let exactMm = Number.NEGATIVE_INFINITY;
-  if (
-    flat &&
-    distanceMm > 0 &&
-    (isAtEnd(lineI, closest.x1, closest.y1) || isAtEnd(lineJ, closest.x2, closest.y2))
-  ) {
-    exactMm = gapBetween(chip, pieces, i, j).distanceMm;
-    if (exactMm >= withinMm - halves) return;
-  } else if (distanceMm >= withinMm) return;
   const paths = channelPaths(context);
-  const nearestAt = pieces.start[i] + Math.hypot(closest.x1 - pieces.x1[i], closest.y1 - pieces.y1[i]);
-  const thin = stretchWithin(lineI, lineJ, withinMm);
-  const thinFrom = thin === null ? nearestAt : pieces.start[i] + thin[0];
-  const thinTo = thin === null ? nearestAt : pieces.start[i] + thin[1];
-
-  const ux = (pieces.x2[i] - pieces.x1[i]) / pieces.length[i];
-  const uy = (pieces.y2[i] - pieces.y1[i]) / pieces.length[i];
-  const vx = (pieces.x2[j] - pieces.x1[j]) / pieces.length[j];
-  const vy = (pieces.y2[j] - pieces.y1[j]) / pieces.length[j];
-  const slope = ux * vx + uy * vy;
-  const offset = (pieces.x1[i] - pieces.x1[j]) * vx + (pieces.y1[i] - pieces.y1[j]) * vy;
-  const facing = (s: number): number =>
-    pieces.start[j] + Math.min(pieces.length[j], Math.max(0, offset + slope * (s - pieces.start[i])));
-  const gapAt = (s: number): number => {
-    const t = s - pieces.start[i];
-    const x = pieces.x1[i] + ux * t;
-    const y = pieces.y1[i] + uy * t;
-    return Math.max(
-      distanceToSegment(x, y, pieces.x1[j], pieces.y1[j], pieces.x2[j], pieces.y2[j]) - halves,
-      exactMm,
-    );
-  };
-
   const faces = facingTest(context, pieces, i, j);
-  // Between these positions the way from s to the place that it faces is the least of a few linear functions of s.
-  const cuts = [thinFrom, thinTo];
-  paths.addBounds(cuts, a, thinFrom, thinTo);
-  if (Math.abs(slope) > 1e-9) {
-    const toS = (t: number): number => pieces.start[i] + (t - pieces.start[j] - offset) / slope;
-    const bounds = [pieces.start[j], pieces.start[j] + pieces.length[j]];
-    const [low, high] = [facing(thinFrom), facing(thinTo)];
-    paths.addBounds(bounds, b, Math.min(low, high), Math.max(low, high));
-    for (const t of bounds) {
-      const s = toS(t);
-      if (s > thinFrom && s < thinTo) cuts.push(s);
-    }
-  }
-  for (const s of faces.cuts) if (s > thinFrom && s < thinTo) cuts.push(s);
-  cuts.sort((p, q) => p - q);
+  const cuts = cutsOf(context, faced, faces.cuts);
   for (let k = 0; k + 1 < cuts.length; k++) {
     const low = cuts[k];
     const high = cuts[k + 1];
     if (high - low <= 1e-9 && cuts.length > 2) continue;
     const middle = (low + high) / 2;
-    if (!faces.at(middle) || paths.isInWell(a, middle) || paths.isInWell(b, facing(middle))) continue;
+    const across = facing(faced, middle);
+    if (!faces.at(middle) || paths.isInWell(a, middle) || paths.isInWell(b, across)) continue;
     const arcA = paths.arcAt(a, middle);
-    const arcB = paths.arcAt(b, facing(middle));
+    const arcB = paths.arcAt(b, across);
     if (arcA < 0 || arcB < 0) continue;
     const routes = paths.routes(arcA, arcB, apartMm);
-    const far = farStretch(routes, low, high, facing, apartMm);
+    const far = farStretch(routes, faced, low, high);
     if (far === null) continue;
     const [from, to] = far;
+    const [otherFrom, otherTo] = [facing(faced, from), facing(faced, to)];
     const thinnestAt = evenlyThin(slope) ? (from + to) / 2 : Math.min(to, Math.max(from, nearestAt));
     into.push({
       a,
@@ -342,34 +316,50 @@ function addThinStretches(
       j,
       from,
       to,
-      otherFrom: facing(from),
-      otherTo: facing(to),
+      otherFrom,
+      otherTo,
       thinFrom: Math.min(from, low),
       thinTo: Math.max(to, high),
       apartMm,
       limitMm,
-      wayFrom: wayOf(routes, from, facing(from)),
-      wayTo: wayOf(routes, to, facing(to)),
-      gapFrom: gapAt(from),
-      gapTo: gapAt(to),
-      gapMm: gapAt(thinnestAt),
+      wayFrom: wayOf(routes, from, otherFrom),
+      wayTo: wayOf(routes, to, otherTo),
+      gapFrom: gapAt(faced, from),
+      gapTo: gapAt(faced, to),
+      gapMm: gapAt(faced, thinnestAt),
       thinnestAt,
     });
   }
 }
 
+/** Positions on i between which the way from one to the place that it faces is the least of a few linear functions. */
+function cutsOf(context: FindingContext, faced: FacedWalls, faceCuts: readonly number[]): number[] {
+  const { pieces, i, j, thinFrom, thinTo, slope, offset } = faced;
+  const paths = channelPaths(context);
+  const cuts = [...faceCuts];
+  if (Math.abs(slope) > 1e-9) {
+    const bounds = [pieces.start[j], pieces.start[j] + pieces.length[j]];
+    const [low, high] = [facing(faced, thinFrom), facing(faced, thinTo)];
+    paths.addBounds(bounds, pieces.centreline[j], Math.min(low, high), Math.max(low, high));
+    for (const t of bounds) cuts.push(pieces.start[i] + (t - pieces.start[j] - offset) / slope);
+  }
+  const inside = [thinFrom, thinTo, ...cuts.filter((s) => s > thinFrom && s < thinTo)];
+  paths.addBounds(inside, pieces.centreline[i], thinFrom, thinTo);
+  return inside.sort((p, q) => p - q);
+}
+
 /** Where on [low, high] every route is longer than apartMm: each is linear there, so it is one stretch. */
 function farStretch(
   routes: readonly Route[],
+  faced: FacedWalls,
   low: number,
   high: number,
-  facing: (s: number) => number,
-  apartMm: number,
 ): readonly [number, number] | null {
   let from = low;
   let to = high;
-  const otherLow = facing(low);
-  const otherHigh = facing(high);
+  const { apartMm } = faced;
+  const otherLow = facing(faced, low);
+  const otherHigh = facing(faced, high);
   for (const route of routes) {
     const atLow = routeLength(route, low, otherLow) - apartMm;
     const atHigh = routeLength(route, high, otherHigh) - apartMm;
@@ -383,12 +373,15 @@ function farStretch(
 }
 
 function wayOf(routes: readonly Route[], s: number, t: number): number {
-  let least = Number.POSITIVE_INFINITY;
-  for (const route of routes) least = Math.min(least, routeLength(route, s, t));
-  return least;
+  const route = shortest(routes, s, t);
+  return route === null ? Number.POSITIVE_INFINITY : routeLength(route, s, t);
 }
 
-/** sin α for tan(α/2) = 1/4: 2t/(1 + t²). */
+/**
+ * Straight pieces that meet at an angle α are thin up to R/sin α from there, R being both halves and the limit, and there
+ * the way along the channels is R cot(α/2): never over the 4 R that make a wall when tan(α/2) is 1/4 or more.
+ * sin α for tan(α/2) = t is 2t/(1 + t²).
+ */
 const SQUARE_SINE = 0.5 / (1 + 1 / 16);
 
 /** Cosine so near 1 that over a metre the two pieces move apart by less than a micrometre. */
@@ -401,17 +394,6 @@ function isAtEnd([ax, ay, bx, by]: Line, x: number, y: number): boolean {
 }
 
 /**
- * Straight pieces that meet at an angle α are thin up to R/sin α from there, R being both halves and the limit, and there
- * the way along the channels is R cot(α/2): never over the 4 R that make a wall when tan(α/2) is 1/4 or more.
- */
-function crossesSquarely(pieces: Pieces, i: number, j: number): boolean {
-  const cross =
-    (pieces.x2[i] - pieces.x1[i]) * (pieces.y2[j] - pieces.y1[j]) -
-    (pieces.y2[i] - pieces.y1[i]) * (pieces.x2[j] - pieces.x1[j]);
-  return Math.abs(cross) >= SQUARE_SINE * pieces.length[i] * pieces.length[j];
-}
-
-/**
  * Whether a place s on piece i faces piece j: no nearer place lies next to it on one of j's neighbours, and it does not look
  * along its own strip at a square end that stands in it. The answer changes only at `cuts`.
  */
@@ -421,10 +403,8 @@ function facingTest(
   i: number,
   j: number,
 ): { readonly cuts: readonly number[]; readonly at: (s: number) => boolean } {
-  const ux = (pieces.x2[i] - pieces.x1[i]) / pieces.length[i];
-  const uy = (pieces.y2[i] - pieces.y1[i]) / pieces.length[i];
-  const vx = (pieces.x2[j] - pieces.x1[j]) / pieces.length[j];
-  const vy = (pieces.y2[j] - pieces.y1[j]) / pieces.length[j];
+  const [ux, uy] = directionOf(pieces, i);
+  const [vx, vy] = directionOf(pieces, j);
   const cuts: number[] = [];
   const start = sideOf(pieces.x1[j], pieces.y1[j], -vx, -vy, neighbourPiece(pieces, j, -1));
   const end = sideOf(pieces.x2[j], pieces.y2[j], vx, vy, neighbourPiece(pieces, j, 1));
@@ -438,9 +418,8 @@ function facingTest(
       return (s) => !isInside || beyond(s) <= 0;
     }
     const sign = Math.hypot(pieces.x1[next] - x, pieces.y1[next] - y) < 1e-12 ? 1 : -1;
-    const nx = (sign * (pieces.x2[next] - pieces.x1[next])) / pieces.length[next];
-    const ny = (sign * (pieces.y2[next] - pieces.y1[next])) / pieces.length[next];
-    const onNext = alongLine(x, y, nx, ny);
+    const [nx, ny] = directionOf(pieces, next);
+    const onNext = alongLine(x, y, sign * nx, sign * ny);
     return (s) => beyond(s) <= 0 || onNext(s) <= 0;
   }
 

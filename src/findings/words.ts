@@ -13,6 +13,11 @@ export function distanceText(mm: number): string {
   return `${formatNumber(mm * 1e3)} µm`;
 }
 
+/** "35°" */
+export function degreesText(rad: number): string {
+  return `${formatNumber((rad * 180) / Math.PI)}°`;
+}
+
 /** A move in the drawing (mm), rounded up to 1 µm so that doing it is enough: "0.031 mm". */
 export function moveText(mm: number): string {
   return `${formatMm(Math.ceil(mm * 1e3 - 1e-6) / 1e3)} mm`;

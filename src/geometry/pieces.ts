@@ -153,6 +153,12 @@ export function pieceAt(pieces: Pieces, centreline: number, s: number): number {
   return low;
 }
 
+/** The piece at an end: end 2c is the start of centreline c, 2c + 1 its last point. */
+export function endPiece(pieces: Pieces, end: number): number {
+  const c = end >> 1;
+  return (end & 1) === 0 ? pieces.firstPiece[c] : pieces.firstPiece[c + 1] - 1;
+}
+
 /** True when the piece's first (second) point is an inner vertex of its centreline, not one of its ends. */
 export function startsAtVertex(pieces: Pieces, piece: number): boolean {
   const c = pieces.centreline[piece];
@@ -173,6 +179,11 @@ export function neighbourPiece(pieces: Pieces, piece: number, step: 1 | -1): num
     return count > 1 ? first + ((piece - first + step + count) % count) : -1;
   }
   return piece + step < first || piece + step >= first + count ? -1 : piece + step;
+}
+
+/** Unit vector along a piece. */
+export function directionOf({ x1, y1, x2, y2, length }: Pieces, i: number): readonly [number, number] {
+  return [(x2[i] - x1[i]) / length[i], (y2[i] - y1[i]) / length[i]];
 }
 
 /** Whether two pieces next to each other are cut from one curve, or from two that are tangent. */
