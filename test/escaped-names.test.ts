@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { assembleChip } from '../src/chip/assemble.ts';
+import { type Assembled, assembleChip } from '../src/chip/assemble.ts';
 import type { Chip } from '../src/chip/types.ts';
 import { withoutEscapes } from '../src/escaped-names.ts';
 import { layOut } from '../src/layout/layout.ts';
@@ -59,13 +59,14 @@ describe('a name that an editor has escaped', () => {
   ): string => `<svg xmlns="http://www.w3.org/2000/svg" width="40mm" height="20mm" viewBox="0 0 40 20">
     <g id="lower_x5F_layer"><path id="run_x5F_1" d="M4 10H36" fill="none" stroke="#000" stroke-width=".2"/>${more}</g>
     <circle id="in_x20_1" cx="4" cy="10" r=".75"/><circle data-name="out 1" id="out_x20_1_2_" cx="36" cy="10" r=".75"/></svg>`;
-  const chip = (sheet: string, drawing = svg()): Chip =>
+  const assembled = (sheet: string, drawing = svg()): Assembled =>
     assembleChip({
       layout: layOut(readSvg(drawing, 'c.svg'), 'c.svg'),
       sheet: parseRunSheet(sheet, 'c.run.yaml'),
       file: 'c.svg',
       layoutSha256: '0'.repeat(64),
     });
+  const chip = (sheet: string, drawing = svg()): Chip => assembled(sheet, drawing).chip;
   const SHEET = (lane: string, layer: string, feed: string, waste: string): string => `
 layers: { ${layer}: { depth: 80 um } }
 ports: { ${feed}: { pressure: 1 kPa }, ${waste}: open }
@@ -78,21 +79,20 @@ cases: { warm: { ports: { ${feed}: { pressure: 2 kPa } } } }
 `;
 
   it('is shown as it was meant, and the run sheet may write either form, in every place', () => {
-    const plain = chip(SHEET('run_1', 'lower_layer', '"in 1"', '"out 1"'));
-    const escaped = chip(SHEET('run_x5F_1', 'lower_x5F_layer', 'in_x20_1', 'out_x20_1'));
-    for (const one of [plain, escaped]) {
-      expect(one.channels).toMatchObject([{ name: 'run_1', depthMm: 0.08, settings: { flow: {} } }]);
-      expect(one.ports).toMatchObject([
-        { name: 'in 1', condition: { kind: 'pressure' } },
-        { name: 'out 1', condition: { kind: 'open' } },
-      ]);
+    const plain = assembled(SHEET('run_1', 'lower_layer', '"in 1"', '"out 1"'));
+    const escaped = assembled(SHEET('run_x5F_1', 'lower_x5F_layer', 'in_x20_1', 'out_x20_1'));
+    for (const { chip: one, run } of [plain, escaped]) {
+      expect(one.channels).toMatchObject([{ name: 'run_1', depthMm: 0.08 }]);
+      expect(run.channels).toMatchObject([{ flow: {} }]);
+      expect(one.ports).toMatchObject([{ name: 'in 1' }, { name: 'out 1' }]);
+      expect(run.ports).toMatchObject([{ condition: { kind: 'pressure' } }, { condition: { kind: 'open' } }]);
       expect(one.layers).toMatchObject([{ name: 'lower_layer' }]);
-      expect(one.sheet?.targets).toMatchObject([{ name: 'run_1', by: 'in 1' }]);
-      expect(one.sheet?.cases[0].sheet.ports['in 1'].condition).toEqual({
+      expect(run.sheet?.targets).toMatchObject([{ name: 'run_1', by: 'in 1' }]);
+      expect(run.sheet?.cases[0].sheet.ports['in 1'].condition).toEqual({
         kind: 'pressure',
         pressurePa: 2000,
       });
-      expect(one.sheet?.accept[0].at).toBe('run_1');
+      expect(run.sheet?.accept[0].at).toBe('run_1');
     }
     expect(chip('depth: 1 um\nignore: [run_x5F_1]').channels).toEqual([]);
     expect(chip('depth: 1 um\nignore: ["run_x5F_*"]').channels).toEqual([]);

@@ -3,6 +3,7 @@ import { channelPaths, pointOn } from '../../src/findings/paths.ts';
 import type { Finding } from '../../src/findings/types.ts';
 import { endsAtVertex, type Pieces, startsAtVertex } from '../../src/geometry/pieces.ts';
 import type { Network } from '../../src/network/types.ts';
+import { runOf } from '../network/chip-of.ts';
 import {
   type Area,
   allMeet,
@@ -398,7 +399,12 @@ class Etched {
   private partsOfNetwork(): number[] {
     const { network } = this;
     const n = this.pieces.centrelineCount;
-    const { vertexCount, sideVertex } = channelPaths({ chip: network.chip, network, flow: null });
+    const { vertexCount, sideVertex } = channelPaths({
+      chip: network.chip,
+      run: runOf(network.chip),
+      network,
+      flow: null,
+    });
     const union = new Union(n + vertexCount + 2 * network.trace.arcCount + network.nodeCount + 2 * n);
     for (let a = 0; a < network.trace.arcCount; a++) {
       union.unite(network.trace.arcCentreline[a], n + sideVertex[2 * a]);
@@ -428,7 +434,7 @@ function toPlaces(network: Network): Place[][] {
       if (trace.placeTo[k] > trace.placeFrom[k]) add(trace.placeCentreline[k], trace.placeTo[k], node);
     }
   }
-  const { sideVertex } = channelPaths({ chip: network.chip, network, flow: null });
+  const { sideVertex } = channelPaths({ chip: network.chip, run: runOf(network.chip), network, flow: null });
   for (let a = 0; a < trace.arcCount; a++) {
     if (sideVertex[2 * a] >= network.nodeCount)
       add(trace.arcCentreline[a], trace.arcFrom[a], sideVertex[2 * a]);

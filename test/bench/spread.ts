@@ -3,10 +3,10 @@ import { performance } from 'node:perf_hooks';
 import { assembleChip } from '../../src/chip/assemble.ts';
 import { layOut } from '../../src/layout/layout.ts';
 import { buildNetwork } from '../../src/network/build.ts';
-import type { Network } from '../../src/network/types.ts';
 import { parseRunSheet } from '../../src/runsheet/parse.ts';
 import type { Tolerances } from '../../src/runsheet/types.ts';
 import { drivesOf } from '../../src/solve/drives.ts';
+import type { RunNetwork } from '../../src/solve/flow-network.ts';
 import { factorFlow, flowStateOf, kindsOf, prepareFlow } from '../../src/solve/flow-state.ts';
 import { factorGraph, solveGraph } from '../../src/solve/graph.ts';
 import { spreadOf } from '../../src/spread/spread.ts';
@@ -26,8 +26,7 @@ export async function measureSpread(): Promise<void> {
   await measure(name, made(name, svg, `${sheet}tolerances: { depth: 5 %, width_own: 2 um }\n`), 200, 100);
 }
 
-interface Made {
-  readonly network: Network;
+interface Made extends RunNetwork {
   readonly tolerances: Tolerances;
 }
 
@@ -35,31 +34,31 @@ function made(name: string, svg: string, sheetText: string): Made {
   const sheet = parseRunSheet(sheetText, `${name}.run.yaml`);
   if (sheet.tolerances === null) throw new Error(`${name} has no tolerances`);
   const layout = layOut(readSvg(svg, `${name}.svg`), `${name}.svg`);
-  const chip = assembleChip({ layout, sheet, file: `${name}.svg`, layoutSha256: '0'.repeat(64) });
-  return { network: buildNetwork(chip), tolerances: sheet.tolerances };
+  const { chip, run } = assembleChip({ layout, sheet, file: `${name}.svg`, layoutSha256: '0'.repeat(64) });
+  return { network: buildNetwork(chip), run, tolerances: sheet.tolerances };
 }
 
 async function measure(
   name: string,
-  { network, tolerances }: Made,
+  { network, run, tolerances }: Made,
   draws: number,
   rounds: number,
 ): Promise<void> {
-  await spreadOf(network, tolerances, { draws: Math.ceil(draws / 10), seed: 2 });
+  await spreadOf({ network, run }, tolerances, { draws: Math.ceil(draws / 10), seed: 2 });
   const begin = performance.now();
-  const spread = await spreadOf(network, tolerances, { draws, seed: 1 });
+  const spread = await spreadOf({ network, run }, tolerances, { draws, seed: 1 });
   const seconds = (performance.now() - begin) / 1000;
   const check = spread.outputs.reduce(
     (sum, { linearSd }) => sum + (Number.isNaN(linearSd) ? 0 : linearSd),
     0,
   );
 
-  const drives = drivesOf(network.chip);
+  const drives = drivesOf(run);
   const kinds = kindsOf(drives);
   const scratch = median(rounds, () => {
-    flowStateOf(factorFlow(prepareFlow(network), kinds), drives);
+    flowStateOf(factorFlow(prepareFlow(network, run), kinds), drives);
   });
-  const factor = factorFlow(prepareFlow(network), kinds);
+  const factor = factorFlow(prepareFlow(network, run), kinds);
   const { graph } = factor.prepared;
   let kept = factor.graphFactor;
   const resistance = kept.resistance.slice();

@@ -5,7 +5,19 @@ import type { Layout } from '../../src/layout/types.ts';
 import { waterViscosity } from '../../src/physics/fluid.ts';
 import { parseRunSheet } from '../../src/runsheet/parse.ts';
 import { FULL_SHEET } from '../runsheet/full-sheet.ts';
-import { chipOf, circle, type Draft, filled, ignored, layout, line, rectangle, stroke } from './drawing.ts';
+import {
+  assembled,
+  chipOf,
+  circle,
+  type Draft,
+  filled,
+  ignored,
+  layout,
+  line,
+  rectangle,
+  runOf,
+  stroke,
+} from './drawing.ts';
 
 const culture: readonly Draft[] = [
   stroke('chip-edge', rectangle(0, 0, 76, 26), { width: 0.1 }),
@@ -26,7 +38,7 @@ const culture: readonly Draft[] = [
 
 describe('assembleChip', () => {
   it('joins a layout and a run sheet with every key into one chip', () => {
-    const chip = chipOf(culture, FULL_SHEET);
+    const { chip, run } = assembled(culture, FULL_SHEET);
     expect(chip).toMatchObject({
       file: 'c.svg',
       unitMm: 1,
@@ -61,9 +73,9 @@ describe('assembleChip', () => {
       ['branch-1', 2, 0],
       ['mixer', 2, 0],
     ]);
-    expect(chip.channels[0]!.settings!.wallShear).toEqual({ min: 0.05, max: 0.5, over: 0.8 });
-    expect(chip.channels[4]!.settings).toBeNull();
-    expect(chip.ports.map(({ name, condition }) => [name, condition.kind])).toEqual([
+    expect(run.channels[0]!.wallShear).toEqual({ min: 0.05, max: 0.5, over: 0.8 });
+    expect(run.channels[4]).toBeNull();
+    expect(chip.ports.map(({ name }, p) => [name, run.ports[p]!.condition.kind])).toEqual([
       ['feed', 'pressure'],
       ['dose', 'flow'],
       ['vent', 'head'],
@@ -73,8 +85,9 @@ describe('assembleChip', () => {
       ['carrier', 'flow'],
       ['out-3', 'unset'],
     ]);
-    expect(chip.ports[3]).toMatchObject({ expect: 'out', xMm: 29, yMm: 22, radiusMm: 1 });
-    expect(chip.fluid).toMatchObject({
+    expect(run.ports[3]).toMatchObject({ expect: 'out' });
+    expect(chip.ports[3]).toMatchObject({ xMm: 29, yMm: 22, radiusMm: 1 });
+    expect(run.fluid).toMatchObject({
       name: 'water',
       temperatureK: 310.15,
       viscosityPaS: waterViscosity(310.15),
@@ -82,12 +95,12 @@ describe('assembleChip', () => {
   });
 
   it('reads a drawing without a run sheet: water at 25 °C, no depths, all ports unset', () => {
-    const chip = chipOf([stroke('a', [0, 0, 10, 0], { groups: ['l'] }), circle('p', 0, 0)]);
-    expect(chip.fluid.temperatureK).toBe(298.15);
+    const { chip, run } = assembled([stroke('a', [0, 0, 10, 0], { groups: ['l'] }), circle('p', 0, 0)]);
+    expect(run.fluid.temperatureK).toBe(298.15);
     expect(chip.channels[0]!.depthMm).toBeNaN();
     expect(chip.faults).toEqual([{ kind: 'missing-depth', channel: 'a', layer: 'l', xMm: 0, yMm: 0 }]);
-    expect(chip.ports[0]).toMatchObject({ condition: { kind: 'unset' }, tubing: [], expect: null });
-    expect(chip.sheet).toBeNull();
+    expect(run.ports[0]).toEqual({ condition: { kind: 'unset' }, tubing: [], expect: null });
+    expect(run.sheet).toBeNull();
     expect(chip.edge).toBeNull();
   });
 
@@ -102,13 +115,13 @@ describe('assembleChip', () => {
 
   it('takes a case like a sheet', () => {
     const sheet = parseRunSheet(FULL_SHEET, 'c.run.yaml');
-    const chip = assembleChip({
+    const { run } = assembleChip({
       layout: layout(culture),
       sheet: sheet.cases[0]!.sheet,
       file: 'c.svg',
       layoutSha256: '',
     });
-    expect(chip.ports[0]!.condition).toEqual({ kind: 'flow', flowM3s: 20 / 6e10 });
+    expect(run.ports[0]!.condition).toEqual({ kind: 'flow', flowM3s: 20 / 6e10 });
   });
 
   it('scales centrelines, bends, widths and ports to millimetres', () => {
@@ -160,7 +173,7 @@ describe('assembleChip', () => {
       );
       const sheet = parseRunSheet('depth: 50 um\nchannels: { "c*": { walls: all } }', 'x');
       return countedLooks(layout(drafts), (counted) => {
-        const chip = assembleChip({ layout: counted, sheet, file: 'x', layoutSha256: '' });
+        const { chip } = assembleChip({ layout: counted, sheet, file: 'x', layoutSha256: '' });
         expect(chip.channels.length).toBe(count);
       });
     };
@@ -267,7 +280,7 @@ describe('depth of a channel', () => {
 
 describe('names as shown', () => {
   it('are unique: drawn ones first, numbers for the rest, none made up that was drawn', () => {
-    const chip = chipOf(
+    const { chip, run } = assembled(
       [
         stroke('lane', [0, 0, 1, 0]),
         stroke('lane', [0, 1, 1, 1]),
@@ -288,7 +301,7 @@ describe('names as shown', () => {
       'channel-7',
       'channel-7-2',
     ]);
-    expect(chip.channels.map(({ settings }) => settings?.walls)).toEqual([
+    expect(run.channels.map((asked) => asked?.walls)).toEqual([
       'all',
       'all',
       undefined,
@@ -299,22 +312,22 @@ describe('names as shown', () => {
 });
 
 describe('settings of a channel', () => {
-  const chip = (channels: string) =>
-    chipOf(
+  const settings = (channels: string) =>
+    runOf(
       [stroke('lane-1', [0, 0, 1, 0]), stroke('lane-20', [0, 1, 1, 1])],
       `depth: 50 um\nchannels: ${channels}`,
-    );
+    ).channels;
 
   it('come from the exact name first, then from the longest pattern', () => {
-    const { channels } = chip(
+    const channels = settings(
       '{ "*": { walls: floor }, "lane-*": { walls: all }, lane-1: { flow: { min: 1 uL/min } } }',
     );
-    expect(channels[0]!.settings).toMatchObject({ walls: 'floor', flow: { min: 1 / 6e10 } });
-    expect(channels[1]!.settings).toMatchObject({ walls: 'all', flow: null });
+    expect(channels[0]).toMatchObject({ walls: 'floor', flow: { min: 1 / 6e10 } });
+    expect(channels[1]).toMatchObject({ walls: 'all', flow: null });
   });
 
   it('are refused when two patterns of one length match', () => {
-    expect(() => chip('{ "lane-*": {}, "*ane-1": {}, "l*": {}, "*0": {} }')).toThrow(
+    expect(() => settings('{ "lane-*": {}, "*ane-1": {}, "l*": {}, "*0": {} }')).toThrow(
       'c.run.yaml:2: channels: "lane-*" and "*ane-1" both match channel "lane-1" and are equally long; give the channel an entry of its own',
     );
   });

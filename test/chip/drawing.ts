@@ -1,6 +1,6 @@
 /** Layouts built by hand: what the reader would make of a drawing. */
-import { assembleChip } from '../../src/chip/assemble.ts';
-import type { Chip } from '../../src/chip/types.ts';
+import { type Assembled, assembleChip } from '../../src/chip/assemble.ts';
+import type { Chip, Run } from '../../src/chip/types.ts';
 import type {
   Centreline,
   Hole,
@@ -112,12 +112,24 @@ export function layout(drafts: readonly Draft[], options: Partial<Omit<Layout, '
   };
 }
 
-/** The chip of drafts and the text of a run sheet; the sheet is `c.run.yaml`, the layout `c.svg`. */
-export function chipOf(
+type Given = Parameters<typeof assembled>;
+
+/** The chip alone. */
+export function chipOf(...given: Given): Chip {
+  return assembled(...given).chip;
+}
+
+/** Its run alone. */
+export function runOf(...given: Given): Run {
+  return assembled(...given).run;
+}
+
+/** The chip and the run of drafts and the text of a run sheet; the sheet is `c.run.yaml`, the layout `c.svg`. */
+export function assembled(
   drafts: readonly Draft[],
   sheet: string | null = null,
   options: Partial<Omit<Layout, 'items'>> = {},
-): Chip {
+): Assembled {
   return assembleChip({
     layout: layout(drafts, options),
     sheet: sheet === null ? null : parseRunSheet(sheet, 'c.run.yaml'),

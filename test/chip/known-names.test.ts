@@ -3,7 +3,7 @@ import { assembleChip } from '../../src/chip/assemble.ts';
 import { layOut } from '../../src/layout/layout.ts';
 import { parseRunSheet } from '../../src/runsheet/parse.ts';
 import { readSvg } from '../../src/svg/read.ts';
-import { chipOf, circle, type Draft, filled, ignored, rectangle, stroke } from './drawing.ts';
+import { chipOf, circle, type Draft, filled, ignored, rectangle, runOf, stroke } from './drawing.ts';
 
 const drafts: readonly Draft[] = [
   stroke('lane-1', [0, 0, 10, 0], { groups: ['Lanes'] }),
@@ -140,13 +140,13 @@ describe('a name that the drawing lacks', () => {
   });
 
   it('may be a pattern that matches exactly one, which then stands for it', () => {
-    const chip = chipOf(
+    const run = runOf(
       drafts,
       'depth: 50 um\nports: { "f*": open, "*": sealed }\ntargets:\n  - { channel: "l*", flow: 1 uL/min, by: feed }\n  - { port: "w*e", pressure: 1 kPa, by: waste }',
     );
-    expect(chip.sheet!.targets.map(({ name }) => name)).toEqual(['lane-1', 'waste']);
+    expect(run.sheet!.targets.map(({ name }) => name)).toEqual(['lane-1', 'waste']);
     // a shape without a name is nobody's
-    expect(chip.ports.map(({ condition }) => condition.kind)).toEqual(['open', 'sealed', 'unset']);
+    expect(run.ports.map(({ condition }) => condition.kind)).toEqual(['open', 'sealed', 'unset']);
   });
 
   it('may be a pattern that a case goes before at every port: it speaks for the other cases', () => {
@@ -159,7 +159,7 @@ describe('a name that the drawing lacks', () => {
         file: 'c.svg',
         layoutSha256: '0'.repeat(64),
       });
-    expect(inCase(sheet('feed: { flow: 1 uL/min }')).ports[0]!.condition.kind).toBe('flow');
+    expect(inCase(sheet('feed: { flow: 1 uL/min }')).run.ports[0]!.condition.kind).toBe('flow');
     // but the sheet's own names overrule it as ever
     expect(() => inCase(sheet('waste: open').replace('"fe*"', 'feed: open, "fe*"'))).toThrow(
       '2: ports.fe*: every port that it matches has an entry that goes before it',
@@ -185,7 +185,7 @@ describe('a name that the drawing lacks', () => {
     expect(() =>
       chipOf([stroke('toString', [0, 0, 1, 0]), circle('valueOf', 0, 0)], 'depth: 1 um'),
     ).not.toThrow();
-    expect(chipOf([circle('valueOf', 0, 0)], 'depth: 1 um').ports[0]!.condition).toEqual({ kind: 'unset' });
+    expect(runOf([circle('valueOf', 0, 0)], 'depth: 1 um').ports[0]!.condition).toEqual({ kind: 'unset' });
   });
 });
 

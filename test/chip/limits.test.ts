@@ -1,13 +1,19 @@
 import { describe, expect, it } from 'vitest';
+import { densityAt, feelsTemperature, viscosityAt } from '../../src/chip/fluid.ts';
+import { minWallM } from '../../src/chip/limits.ts';
 import {
   glycerolDensity,
   glycerolViscosity,
   massFractionFromVolume,
   waterDensity,
 } from '../../src/physics/fluid.ts';
-import { chipOf, circle } from './drawing.ts';
+import { assembled, circle, runOf } from './drawing.ts';
 
-const limitsOf = (sheet: string | null) => chipOf([circle('p', 0, 0)], sheet).limits;
+/** The least wall, of which depth it may be asked, and every other limit. */
+const limitsOf = (sheet: string | null) => {
+  const { chip, run } = assembled([circle('p', 0, 0)], sheet);
+  return { ...run.limits, minWallM: (depthM: number) => minWallM(chip, depthM) };
+};
 
 describe('limits', () => {
   // Usual practice, no source: width, wall, w/d, d/w, margin, gap, pressure.
@@ -62,7 +68,7 @@ describe('limits', () => {
 });
 
 describe('fluid', () => {
-  const fluidOf = (sheet: string | null) => chipOf([circle('p', 0, 0)], sheet).fluid;
+  const fluidOf = (sheet: string | null) => runOf([circle('p', 0, 0)], sheet).fluid;
 
   it('is water at 25 °C unless said otherwise', () => {
     // IAPWS SR6-08(2011), verification row 298.15 K: 889.996774 µPa s, 997.047013 kg/m³ (published, seen).
@@ -70,7 +76,9 @@ describe('fluid', () => {
     expect(fluid.viscosityPaS).toBeCloseTo(889.996774e-6, 12);
     expect(fluid.densityKgM3).toBeCloseTo(997.047013, 5);
     expect(fluid.source).toContain('IAPWS');
-    expect(fluid.viscosityAt(310.15)).toBeLessThan(fluid.viscosityPaS);
+    expect(viscosityAt(fluid, 310.15)).toBeLessThan(fluid.viscosityPaS);
+    expect(densityAt(fluid, 310.15)).toBe(waterDensity(310.15));
+    expect(feelsTemperature(fluid)).toBe(true);
   });
 
   it('is glycerol in water by mass, or by volume of the parts before mixing', () => {
@@ -84,14 +92,18 @@ describe('fluid', () => {
     const mass = massFractionFromVolume(0.3, T);
     const byVolume = fluidOf('temperature: 20 degC\nfluid: { glycerol: 30 % by volume }');
     expect(byVolume.viscosityPaS).toBe(glycerolViscosity(T, mass));
-    expect(byVolume.viscosityAt(303.15)).toBe(glycerolViscosity(303.15, mass));
+    // the share by mass stays what mixing made it, however warm the tubing
+    expect(viscosityAt(byVolume, 303.15)).toBe(glycerolViscosity(303.15, mass));
+    expect(densityAt(byVolume, 303.15)).toBe(glycerolDensity(303.15, mass));
   });
 
   it('as given ignores the temperature and says so', () => {
     const fluid = fluidOf('temperature: 300 degC\nfluid: { viscosity: 2 cP, density: 1010 kg/m^3 }');
     expect(fluid).toMatchObject({ name: 'as given', viscosityPaS: 2e-3, densityKgM3: 1010 });
     expect(fluid.source).toBe('run sheet; the temperature given is ignored');
-    expect(fluid.viscosityAt(280)).toBe(2e-3);
+    expect(viscosityAt(fluid, 280)).toBe(2e-3);
+    expect(densityAt(fluid, 280)).toBe(1010);
+    expect(feelsTemperature(fluid)).toBe(false);
     expect(fluidOf('fluid: { viscosity: 2 cP, density: 1010 kg/m^3 }').source).toBe('run sheet');
   });
 

@@ -1,5 +1,15 @@
 import { describe, expect, it } from 'vitest';
-import { chipOf, circle, type Draft, filled, ignored, line, rectangle, stroke } from './drawing.ts';
+import {
+  assembled,
+  chipOf,
+  circle,
+  type Draft,
+  filled,
+  ignored,
+  line,
+  rectangle,
+  stroke,
+} from './drawing.ts';
 
 const SHEET = 'depth: 50 um\n';
 
@@ -206,7 +216,7 @@ describe('ports', () => {
   });
 
   it('take concentric circles as one, the largest as the well, with a name from any', () => {
-    const chip = chipOf(
+    const { chip, run } = assembled(
       [
         circle(null, 10, 0, 0.3),
         circle('feed', 10.0005, 0, 0.5),
@@ -215,10 +225,8 @@ describe('ports', () => {
       ],
       `${SHEET}ports: { feed: { pressure: 1 kPa } }`,
     );
-    expect(chip.ports).toMatchObject([
-      { name: 'feed', xMm: 10.01, radiusMm: 2, condition: { kind: 'pressure' } },
-      { name: 'other' },
-    ]);
+    expect(chip.ports).toMatchObject([{ name: 'feed', xMm: 10.01, radiusMm: 2 }, { name: 'other' }]);
+    expect(run.ports).toMatchObject([{ condition: { kind: 'pressure' } }, { condition: { kind: 'unset' } }]);
   });
 
   it('take of several names in one well the one that the run sheet uses', () => {

@@ -1,15 +1,15 @@
 import { describe, expect, it } from 'vitest';
-import type { Chip } from '../../src/chip/types.ts';
+import type { Assembled } from '../../src/chip/assemble.ts';
 import { findAll } from '../../src/findings/check.ts';
 import type { FindingReport } from '../../src/findings/types.ts';
 import { buildNetwork } from '../../src/network/build.ts';
 import { solveFlow } from '../../src/solve/flow-state.ts';
 import { lanesChip, latticeChip } from './big-chips.ts';
 
-function checked(chip: Chip): { readonly segments: number; readonly report: FindingReport } {
+function checked({ chip, run }: Assembled): { readonly segments: number; readonly report: FindingReport } {
   const network = buildNetwork(chip);
-  const flow = solveFlow(network);
-  return { segments: network.segmentCount, report: findAll({ chip, network, flow }) };
+  const flow = solveFlow(network, run);
+  return { segments: network.segmentCount, report: findAll({ chip, run, network, flow }) };
 }
 
 function countsByRule({ findings }: FindingReport): Record<string, number> {

@@ -1,8 +1,9 @@
-import type { Chip } from '../../src/chip/types.ts';
-import { type ChannelSpec, chipOf } from '../network/chip-of.ts';
+import type { Assembled } from '../../src/chip/assemble.ts';
+import type { Chip, Run } from '../../src/chip/types.ts';
+import { type ChannelSpec, chipOf, runOf } from '../network/chip-of.ts';
 
 /** n × n crossing channels, 0.1 mm wide and 1 mm apart, with a well in two opposite corners: 2n(n − 1) inner segments. */
-export function latticeChip(n: number): Chip {
+export function latticeChip(n: number): Assembled {
   const channels: ChannelSpec[] = [];
   for (let i = 0; i < n; i++) {
     channels.push({ name: `h${i}`, widthMm: 0.1, depthMm: 0.05, lines: [[0.5, i + 0.5, n - 0.5, i + 0.5]] });
@@ -17,7 +18,7 @@ export function latticeChip(n: number): Chip {
 }
 
 /** k zigzag lanes of m legs between two manifolds. */
-export function lanesChip(k: number, m: number): Chip {
+export function lanesChip(k: number, m: number): Assembled {
   const right = 1 + 0.4 * m;
   const bottom = 1 + 2 * (k - 1);
   const manifold = { widthMm: 0.2, depthMm: 0.05 };
@@ -41,32 +42,29 @@ export function lanesChip(k: number, m: number): Chip {
 }
 
 /** With pressures, every limit and a window on every channel, so that every rule has work to do. */
-function driven(chip: Chip): Chip {
+function driven(chip: Chip): Assembled {
   const limit = <T>(value: T) => ({ value, origin: 'run sheet' as const });
-  return {
-    ...chip,
-    channels: chip.channels.map((channel) => ({
-      ...channel,
-      settings: {
-        line: 1,
-        wallShear: { min: 1e-9, max: 10, over: 0.5 },
-        residenceTime: { min: 1e-6, max: null },
-        flow: { min: null, max: 1e-6 },
-        walls: 'all',
-        even: null,
-        concentration: null,
-        mixing: null,
-      },
+  const plain = runOf(chip);
+  const run: Run = {
+    ...plain,
+    channels: chip.channels.map(() => ({
+      line: 1,
+      wallShear: { min: 1e-9, max: 10, over: 0.5 },
+      residenceTime: { min: 1e-6, max: null },
+      flow: { min: null, max: 1e-6 },
+      walls: 'all',
+      even: null,
+      concentration: null,
+      mixing: null,
     })),
-    ports: chip.ports.map((port, p) => ({
+    ports: plain.ports.map((port, p) => ({
       ...port,
       condition: { kind: 'pressure', pressurePa: p === 0 ? 10e3 : 0 },
       expect: p === 0 ? 'in' : 'out',
     })),
     limits: {
-      ...chip.limits,
+      ...plain.limits,
       minWidthM: limit(40e-6),
-      minWallM: () => limit(60e-6),
       maxWidthToDepth: limit(12),
       maxDepthToWidth: limit(2),
       portGapM: limit(1e-3),
@@ -76,4 +74,5 @@ function driven(chip: Chip): Chip {
       stiffnessPa: limit(1.5e6),
     },
   };
+  return { chip: { ...chip, leastWall: { flatM: 60e-6, perDepth: 0, origin: 'run sheet' } }, run };
 }

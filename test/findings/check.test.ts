@@ -7,14 +7,11 @@ import type { Severity } from '../../src/findings/types.ts';
 import { buildNetwork } from '../../src/network/build.ts';
 import { RULE_MEASURES, UNACCEPTABLE_RULES } from '../../src/runsheet/measures.ts';
 import type { AcceptEntry } from '../../src/runsheet/types.ts';
-import { chipOf } from '../network/chip-of.ts';
+import { chipOf, runOf } from '../network/chip-of.ts';
 
 function contextWith(accept: readonly AcceptEntry[] = []): FindingContext {
-  const network = buildNetwork({
-    ...chipOf([{ name: 'a', widthMm: 0.2, lines: [[0, 0, 10, 0]] }]),
-    accept,
-  });
-  return { chip: network.chip, network, flow: null };
+  const chip = chipOf([{ name: 'a', widthMm: 0.2, lines: [[0, 0, 10, 0]] }]);
+  return { chip, run: { ...runOf(chip), accept }, network: buildNetwork(chip), flow: null };
 }
 
 function saying(rule: string, severity: Severity, xMm: number | null, name = 'a'): Rule {

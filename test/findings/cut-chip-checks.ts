@@ -1,7 +1,7 @@
 import { expect } from 'vitest';
 import { findAll } from '../../src/findings/check.ts';
 import type { Finding } from '../../src/findings/types.ts';
-import type { Network } from '../../src/network/types.ts';
+import type { RunNetwork } from '../../src/solve/flow-network.ts';
 import { type CutChip, forkChip, netChip, randomOf } from './cut-chips.ts';
 import { contextOf } from './findings-of.ts';
 
@@ -16,21 +16,14 @@ export function expectCutsToBeNamed(seed: number, runs: number): void {
 }
 
 /** Ports that are driven or open and have no way to another such port that is not in the same hole. */
-export function portsWithoutAWay({
-  chip,
-  nodeCount,
-  reachCount,
-  reachFrom,
-  reachTo,
-  portNode,
-}: Network): string[] {
+export function portsWithoutAWay({ network, run }: RunNetwork): string[] {
+  const { chip, nodeCount, reachCount, reachFrom, reachTo, portNode } = network;
   const neighbours = Array.from({ length: nodeCount }, (): number[] => []);
   for (let r = 0; r < reachCount; r++) {
     neighbours[reachFrom[r]].push(reachTo[r]);
     neighbours[reachTo[r]].push(reachFrom[r]);
   }
-  const isTerminal = (port: number): boolean =>
-    !['sealed', 'unset'].includes(chip.ports[port].condition.kind);
+  const isTerminal = (port: number): boolean => !['sealed', 'unset'].includes(run.ports[port].condition.kind);
   const terminals = new Set([...portNode].filter((_, port) => isTerminal(port)));
   return chip.ports.flatMap(({ name }, port) => {
     if (!isTerminal(port)) return [];
@@ -58,10 +51,10 @@ function expectCut({ svg, sheet, gap, isNarrow }: CutChip, seed: number): void {
   const context = contextOf(svg, sheet);
   const { findings, verdict } = findAll(context);
   const text = `seed ${seed}: ${svg}\n${sheet}\n${findings.map(({ rule, severity, message }) => `${severity} ${rule} ${message}`).join('\n')}`;
-  for (const port of portsWithoutAWay(context.network)) {
+  for (const port of portsWithoutAWay(context)) {
     expect(isSpokenOf(findings, port), `${port} ${text}`).toBe(true);
     const isOpen = context.chip.ports.some(
-      ({ name, condition }) => name === port && condition.kind === 'open',
+      ({ name }, p) => name === port && context.run.ports[p].condition.kind === 'open',
     );
     if (isOpen) expect(verdict, `${port} ${text}`).toBe('hold');
   }

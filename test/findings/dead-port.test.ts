@@ -23,7 +23,7 @@ describe('dead-port', () => {
         const { findings } = findAll(context);
         // Where an outline leads, that nothing is joined follows from the outline.
         if (findings.some(({ rule }) => rule === 'filled-outline')) continue;
-        for (const port of portsWithoutAWay(context.network)) {
+        for (const port of portsWithoutAWay(context)) {
           ports++;
           expect(isSpokenOf(findings, port), `${file}: ${port}`).toBe(true);
         }

@@ -1,9 +1,9 @@
 import { describe, expect, it } from 'vitest';
-import type { Chip } from '../../src/chip/types.ts';
+import type { Chip, Run } from '../../src/chip/types.ts';
 import { edgeRules } from '../../src/findings/edge.ts';
 import type { Finding } from '../../src/findings/types.ts';
 import { buildNetwork } from '../../src/network/build.ts';
-import { type ChannelSpec, chipOf, type PortSpec } from '../network/chip-of.ts';
+import { type ChannelSpec, chipOf, type PortSpec, runOf } from '../network/chip-of.ts';
 
 const SQUARE = [0, 0, 20, 0, 20, 20, 0, 20, 0, 0];
 
@@ -17,9 +17,13 @@ function edgeFindings(
     ...plain,
     edge: { name: 'chip-edge', rings: rings.map((ring) => Float64Array.from(ring)), sidesMm: [20, 20] },
     sizeMm: [20, 20],
-    limits: { ...plain.limits, edgeMarginM: { value: 1e-3, origin: 'run sheet' } },
   };
-  const context = { chip, network: buildNetwork(chip), flow: null };
+  const plainRun = runOf(chip);
+  const run: Run = {
+    ...plainRun,
+    limits: { ...plainRun.limits, edgeMarginM: { value: 1e-3, origin: 'run sheet' } },
+  };
+  const context = { chip, run, network: buildNetwork(chip), flow: null };
   return edgeRules.flatMap((rule) => rule.run(context).findings);
 }
 
@@ -83,7 +87,7 @@ describe('the chip edge', () => {
       ...plain,
       edge: { name: 'chip-edge', rings: [Float64Array.from(SQUARE)], sidesMm: [20, 20] },
     };
-    const context = { chip, network: buildNetwork(chip), flow: null };
+    const context = { chip, run: runOf(chip), network: buildNetwork(chip), flow: null };
     expect(edgeRules.flatMap((rule) => rule.run(context).findings)).toEqual([]);
     expect(edgeRules.flatMap((rule) => rule.run(context).notRun.map(({ rule: name }) => name))).toEqual([
       'edge-margin',

@@ -1,5 +1,5 @@
-import { reachName } from '../../src/network/names.ts';
 import { describe, expect, it } from 'vitest';
+import { reachName } from '../../src/network/names.ts';
 import { solveFlow } from '../../src/solve/flow-state.ts';
 import { drawing, networkFrom } from '../solve/network-from.ts';
 import { findingsOf } from './findings-of.ts';
@@ -30,11 +30,11 @@ function levelFindings(ports: Readonly<Record<string, string>>, windowed: readon
 
 /** Flow through a channel by a solve of its own. */
 function flowOf(channel: string, ports: Readonly<Record<string, string>>): number {
-  const network = networkFrom(SVG, sheet(ports, []));
+  const { network, run } = networkFrom(SVG, sheet(ports, []));
   const reach = Array.from({ length: network.reachCount }, (_, r) => r).find(
     (r) => reachName(network, r) === channel,
   );
-  return solveFlow(network).reachFlow[reach ?? -1];
+  return solveFlow(network, run).reachFlow[reach ?? -1];
 }
 
 describe('level-sensitive', () => {

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { channelPaths, routeLength } from '../../src/findings/paths.ts';
 import { buildNetwork } from '../../src/network/build.ts';
-import { type ChannelSpec, chipOf, type PortSpec } from '../network/chip-of.ts';
+import { type ChannelSpec, chipOf, type PortSpec, runOf } from '../network/chip-of.ts';
 
 /** Length along the channels between two places, each [centreline, position]. */
 function way(
@@ -12,7 +12,7 @@ function way(
   withinMm = 100,
 ): number {
   const chip = chipOf(channels, ports);
-  const paths = channelPaths({ chip, network: buildNetwork(chip), flow: null });
+  const paths = channelPaths({ chip, run: runOf(chip), network: buildNetwork(chip), flow: null });
   const routes = paths.routes(paths.arcAt(ca, s), paths.arcAt(cb, t), withinMm);
   return routes.reduce((least, route) => Math.min(least, routeLength(route, s, t)), Number.POSITIVE_INFINITY);
 }

@@ -26,14 +26,14 @@ async function lanesOf(svg: string) {
     svg,
     'depth: 0.1 mm\njoints: centreline\nports: { in: { flow: 10 uL/min }, out: open }\nchannels: { "lane-*": { even: 5 % } }\n',
   );
-  const { chip, network, flow } = analysis;
+  const { chip, run, network, flow } = analysis;
   const lanes = chip.channels.flatMap(({ name }, channel) => {
     if (!name.startsWith('lane-')) return [];
     const reach = network.reachChannel.indexOf(channel);
     const flowM3s = Math.abs(flow.reachFlow[reach]);
     return [{ name, reach, flowM3s, resistance: flow.reachResistance[reach] }];
   });
-  const context: FindingContext = { chip, network, flow };
+  const context: FindingContext = { chip, run, network, flow };
   return { context, lanes };
 }
 

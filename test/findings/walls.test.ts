@@ -5,7 +5,7 @@ import { strokeRules } from '../../src/findings/strokes.ts';
 import type { Finding } from '../../src/findings/types.ts';
 import { wallRules } from '../../src/findings/walls.ts';
 import { buildNetwork } from '../../src/network/build.ts';
-import { type ChannelSpec, chipOf, type PortSpec } from '../network/chip-of.ts';
+import { type ChannelSpec, chipOf, type PortSpec, runOf } from '../network/chip-of.ts';
 
 const MIN_WALL_MM = 0.04;
 
@@ -13,9 +13,9 @@ function wallsOf(channels: readonly ChannelSpec[], ports: readonly PortSpec[] = 
   const plain = chipOf(channels, ports);
   const chip: Chip = {
     ...plain,
-    limits: { ...plain.limits, minWallM: () => ({ value: MIN_WALL_MM / 1e3, origin: 'run sheet' }) },
+    leastWall: { flatM: MIN_WALL_MM / 1e3, perDepth: 0, origin: 'run sheet' },
   };
-  const context = { chip, network: buildNetwork(chip), flow: null };
+  const context = { chip, run: runOf(chip), network: buildNetwork(chip), flow: null };
   return [...strokeRules, ...wallRules].flatMap((rule) => rule.run(context).findings);
 }
 
@@ -147,12 +147,9 @@ describe('walls between channels', () => {
     const plain = chipOf(channels);
     const chip: Chip = {
       ...plain,
-      limits: {
-        ...plain.limits,
-        minWallM: (depthM) => ({ value: 50e-6 + 2 * depthM, origin: 'typical value, not from your maker' }),
-      },
+      leastWall: { flatM: 50e-6, perDepth: 2, origin: 'typical value, not from your maker' },
     };
-    const context = { chip, network: buildNetwork(chip), flow: null };
+    const context = { chip, run: runOf(chip), network: buildNetwork(chip), flow: null };
     const [finding] = wallRules.flatMap((rule) => rule.run(context).findings);
     expect(finding.rule).toBe('thin-wall');
     expect(finding.limit).toBeCloseTo(250e-6, 12);

@@ -14,16 +14,16 @@ it(`every draw of ${RUNS} spreads from seed ${SEED} is judged as a chip of its o
   for (let seed = SEED; seed < SEED + RUNS; seed++) {
     const { shapes, sheet } = randomLadder(seed);
     const made = varying(shapes, sheet);
-    const { isGood } = await spreadOf(made.network, made.tolerances, { draws: DRAWS, seed: seed % 1000 });
+    const { isGood } = await spreadOf(made, made.tolerances, { draws: DRAWS, seed: seed % 1000 });
     expect([...isGood], `seed ${seed}\n${sheet}\n${shapes}`).toEqual(goodDraws(made, DRAWS, seed % 1000));
   }
 });
 
 it(`joint shares of ${RUNS} random chips from seed ${SEED} are those of finite differences`, () => {
   for (let seed = SEED; seed < SEED + RUNS; seed++) {
-    const network = randomGrid(seed);
-    const wanted = sharesAnew(network, 1e-3);
-    const all = sharesOf(network);
+    const grid = randomGrid(seed);
+    const wanted = sharesAnew(grid, 1e-3);
+    const all = sharesOf(grid);
     for (const name of ['portFlow', 'portPressure', 'reachFlow'] as const)
       expectClose(all[name], wanted[name], 1e-4, `seed ${seed} ${name}`);
   }

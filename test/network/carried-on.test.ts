@@ -1,6 +1,6 @@
-import { reachName } from '../../src/network/names.ts';
 import { describe, expect, it } from 'vitest';
 import { buildNetwork } from '../../src/network/build.ts';
+import { reachName } from '../../src/network/names.ts';
 import { randomFrom } from '../solve/graphs.ts';
 import { type ChannelSpec, chipOf, type PortSpec } from './chip-of.ts';
 

@@ -1,4 +1,4 @@
-import type { Channel, Chip, ChipLayer, Port } from '../../src/chip/types.ts';
+import type { Channel, Chip, ChipLayer, Port, Run } from '../../src/chip/types.ts';
 
 export interface ChannelSpec {
   readonly name: string;
@@ -46,20 +46,28 @@ export function chipOf(channels: readonly ChannelSpec[], ports: readonly PortSpe
     unreadLines: [],
     ignored: {},
     faults: [],
+    joinWithinMm: 1e-3,
+    joints: 'centreline',
+    process: null,
+    leastWall: null,
+  };
+}
+
+/** How such a chip is run when nobody said: a fluid of 1 mPa s and 1000 kg/m³, no port set, nothing asked. */
+export function runOf({ channels, ports }: Pick<Chip, 'channels' | 'ports'>): Run {
+  return {
     fluid: {
       name: 'as given',
       temperatureK: 298.15,
       viscosityPaS: 1e-3,
       densityKgM3: 1000,
       source: 'run sheet',
-      viscosityAt: () => 1e-3,
+      mixture: { kind: 'custom' },
     },
-    joinWithinMm: 1e-3,
-    joints: 'centreline',
-    process: null,
+    ports: ports.map(() => ({ condition: { kind: 'unset' }, tubing: [], expect: null })),
+    channels: channels.map(() => null),
     limits: {
       minWidthM: null,
-      minWallM: () => null,
       maxWidthToDepth: null,
       maxDepthToWidth: null,
       edgeMarginM: null,
@@ -99,7 +107,6 @@ function toChannel(spec: ChannelSpec, ordinal: number, depths: readonly string[]
     })),
     disguises: [],
     dataChannel: false,
-    settings: null,
   };
 }
 
@@ -111,8 +118,5 @@ function toPort(spec: PortSpec, ordinal: number): Port {
     xMm: spec.x,
     yMm: spec.y,
     radiusMm: spec.radiusMm,
-    condition: { kind: 'unset' },
-    tubing: [],
-    expect: null,
   };
 }

@@ -1,6 +1,6 @@
-import { reachName, nodeName } from '../../src/network/names.ts';
 import { describe, expect, it } from 'vitest';
 import { buildNetwork } from '../../src/network/build.ts';
+import { nodeName, reachName } from '../../src/network/names.ts';
 import { type Network, NODE_KINDS } from '../../src/network/types.ts';
 import { type ChannelSpec, chipOf, type PortSpec } from './chip-of.ts';
 

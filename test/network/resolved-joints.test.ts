@@ -1,7 +1,7 @@
-import { reachName } from '../../src/network/names.ts';
 import { describe, expect, it } from 'vitest';
 import type { Chip } from '../../src/chip/types.ts';
 import { buildNetwork } from '../../src/network/build.ts';
+import { reachName } from '../../src/network/names.ts';
 import { bendK, crossK, mitreK, stepK, teeEqualK, teeIntoWideK } from '../../src/physics/joints.ts';
 import { type ChannelSpec, chipOf, type PortSpec } from './chip-of.ts';
 

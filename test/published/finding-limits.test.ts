@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { resolveLimits } from '../../src/chip/limits.ts';
+import { minWallM, resolveLeastWall, resolveLimits } from '../../src/chip/limits.ts';
 import { NEAR_VACUUM_PA } from '../../src/findings/pressure.ts';
 import { CURVED_FLOW_DEAN, curvedFrictionFactor } from '../../src/physics/dean.ts';
 import { meanRoofRise } from '../../src/physics/roof.ts';
@@ -40,7 +40,8 @@ describe('usual limits that have a source', () => {
     const depthM = 30e-6;
     const mask = isotropicSection(100e-6, depthM);
     const undercutM = mask.stripWidthM - 100e-6;
-    expect((limitsOf('etched glass').minWallM(depthM)?.value ?? 0) - undercutM).toBeCloseTo(50e-6, 12);
+    const leastWall = resolveLeastWall(sheetOf('etched glass'));
+    expect((minWallM({ leastWall }, depthM)?.value ?? 0) - undercutM).toBeCloseTo(50e-6, 12);
   });
 
   it('says of every usual limit that it has no source', () => {
@@ -69,7 +70,11 @@ describe('limits of the flow itself', () => {
 });
 
 function limitsOf(process: string) {
-  return resolveLimits(parseRunSheet(`process: ${process}\n`, 'limits.run.yaml'));
+  return resolveLimits(sheetOf(process));
+}
+
+function sheetOf(process: string) {
+  return parseRunSheet(`process: ${process}\n`, 'limits.run.yaml');
 }
 
 function vapourPressurePa(temperatureK: number): number {

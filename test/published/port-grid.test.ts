@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest';
 import type { Chip } from '../../src/chip/types.ts';
 import { portGridFaults } from '../../src/findings/port-grid.ts';
 import { buildNetwork } from '../../src/network/build.ts';
-import { chipOf } from '../network/chip-of.ts';
+import { chipOf, runOf } from '../network/chip-of.ts';
 
 /**
  * Interconnect grid that ISO 22916:2022 grew out of (an open guideline of 2017, seen reprinted; the clauses of the standard
@@ -25,7 +25,7 @@ function faults(pitchMm: number, diameterMm: number, x = 3, y = 3): readonly str
       sidesMm: [75, 24],
     },
   };
-  const context = { chip, network: buildNetwork(chip), flow: null };
+  const context = { chip, run: runOf(chip), network: buildNetwork(chip), flow: null };
   return portGridFaults(context, { value: pitchMm / 1e3, origin: 'run sheet' }).map(({ message }) => message);
 }
 

@@ -1,4 +1,4 @@
-import { assembleChip } from '../../src/chip/assemble.ts';
+import { type Assembled, assembleChip } from '../../src/chip/assemble.ts';
 import type { Chip } from '../../src/chip/types.ts';
 import { layOut } from '../../src/layout/layout.ts';
 import { buildNetwork } from '../../src/network/build.ts';
@@ -62,10 +62,10 @@ export function compareSeed(seed: number): Comparison {
   let worstFromPlan = 0;
   let worstFlowFromPlan = 0;
 
-  const chip = chipOf(svg, drawing.sheet);
-  const program = programAnswer(chip);
+  const made = assembled(svg, drawing.sheet);
+  const program = programAnswer(made);
   faults.push(...program.faults);
-  const second = answerOf(simplified(secondGraph(chip), SHORTEST_MM), drives);
+  const second = answerOf(simplified(secondGraph(made.chip), SHORTEST_MM), drives);
   const fromSecond = deviation(second, program, sameReadingBound(drawing, plan));
   faults.push(...fromSecond.faults.map((fault) => `second implementation: ${fault}`));
   worstFromSecond = fromSecond.worstFlow;
@@ -77,7 +77,7 @@ export function compareSeed(seed: number): Comparison {
   worstFlowFromPlan = fromPlan.worstFlow;
 
   for (const [way, text, map] of otherWays(drawing, random)) {
-    const other = programAnswer(chipOf(text, drawing.sheet));
+    const other = programAnswer(assembled(text, drawing.sheet));
     const same = deviation(moved(program, map), other, sameReadingBound(drawing, plan));
     faults.push(...same.faults.map((fault) => `${way}: ${fault}`));
   }
@@ -121,7 +121,7 @@ function answerOf(graph: Graph, drives: ReadonlyMap<string, PortDrive>): Answer 
   return { graph, flow: denseFlow(graph, drives, VISCOSITY_PA_S) };
 }
 
-export function chipOf(svg: string, sheet: string): Chip {
+function assembled(svg: string, sheet: string): Assembled {
   return assembleChip({
     layout: layOut(readSvg(svg, 'random.svg'), 'random.svg'),
     sheet: parseRunSheet(sheet, 'random.run.yaml'),
@@ -151,9 +151,9 @@ const pointsOf = (flat: Float64Array): Point[] =>
   Array.from({ length: flat.length / 2 }, (_, i) => ({ x: flat[2 * i], y: flat[2 * i + 1] }));
 
 /** What the program makes of it. */
-function programAnswer(chip: Chip): Answer & { readonly faults: readonly string[] } {
+function programAnswer({ chip, run }: Assembled): Answer & { readonly faults: readonly string[] } {
   const network = buildNetwork(chip);
-  const state = solveFlow(network);
+  const state = solveFlow(network, run);
   const nodes = Array.from({ length: network.nodeCount }, (_, n) => ({
     at: { x: network.nodeX[n], y: network.nodeY[n] },
     port: network.nodePort[n] < 0 ? null : chip.ports[network.nodePort[n]].name,
@@ -392,9 +392,9 @@ export const named = (graph: Graph, { from, to }: Duct) =>
 
 /** Duct lengths of the program against the second implementation on any texts: to replay and to reduce a drawing that failed. */
 export function compareTexts(svg: string, sheet: string, limitMm = 4e-3): readonly string[] {
-  const chip = chipOf(svg, sheet);
+  const made = assembled(svg, sheet);
   const none = new Map<string, PortDrive>();
-  const program = answerOf(programAnswer(chip).graph, none);
-  const second = answerOf(simplified(secondGraph(chip), SHORTEST_MM), none);
+  const program = answerOf(programAnswer(made).graph, none);
+  const second = answerOf(simplified(secondGraph(made.chip), SHORTEST_MM), none);
   return deviation(second, program, () => limitMm).faults;
 }

@@ -9,15 +9,15 @@ it('says per kind how many joints were computed and how many not: a manifold of 
   )
     .replace('data-name="wide"', 'data-name="wide" stroke-width="0.3"')
     .replace('data-name="deep"', 'data-name="deep" data-depth="120 um"');
-  const { joints } = networkFrom(svg, 'depth: 80 um\nports: { feed: { pressure: 1 kPa } }\n');
-  expect(jointsText(joints)).toBe(
+  const { network } = networkFrom(svg, 'depth: 80 um\nports: { feed: { pressure: 1 kPa } }\n');
+  expect(jointsText(network.joints)).toBe(
     '2 of 4 joints computed (1 mitred corner, 1 T of equal ducts); not computed: 1 T of unequal ducts, 1 T with a step in depth',
   );
 });
 
 it('counts entries from wells for no joints, and says nothing where there is none', () => {
   const svg = drawing({ lane: 'M5 10H50' }, { feed: [5, 10], waste: [50, 10] });
-  const { joints } = networkFrom(svg, 'depth: 80 um\nports: { feed: { pressure: 1 kPa }, waste: open }\n');
-  expect(joints).not.toEqual([]);
-  expect(jointsText(joints)).toBeNull();
+  const { network } = networkFrom(svg, 'depth: 80 um\nports: { feed: { pressure: 1 kPa }, waste: open }\n');
+  expect(network.joints).not.toEqual([]);
+  expect(jointsText(network.joints)).toBeNull();
 });

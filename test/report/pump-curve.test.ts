@@ -7,12 +7,12 @@ import { drawing, networkFrom } from '../solve/network-from.ts';
 const SVG = drawing({ lane: 'M5 10H50' }, { in: [5, 10], out: [50, 10] });
 
 function curveOf(target: string, more = '') {
-  const network = networkFrom(
+  const driven = networkFrom(
     SVG,
     `depth: 100 um\nports:\n  in: { pressure: 1 kPa, tubing: { bore: 0.2 mm, length: 200 mm } }\n  out: open\ntargets:\n  - { channel: lane, ${target}, by: in }\n${more}`,
   );
-  const [found] = findSettings(network).targets;
-  return { found, curve: pumpCurve(network, found, showOf(null)) };
+  const [found] = findSettings(driven).targets;
+  return { found, curve: pumpCurve(driven, found, showOf(null)) };
 }
 
 describe('pumpCurve', () => {

@@ -67,11 +67,22 @@ describe('the result of a case', () => {
 
   test('makes rows only when asked', () => {
     const input = sampleInput();
-    let asked = 0;
-    const counting = { ...input.network, segmentName: (segment: number) => `s${asked++}-${segment}` };
-    const lazy = buildResult({ ...input, network: counting });
-    expect(asked).toBe(0);
+    const looked = { nodeX: 0, reachFrom: 0, segmentX1: 0 };
+    const network = { ...input.network };
+    for (const name of ['nodeX', 'reachFrom', 'segmentX1'] as const) {
+      Object.defineProperty(network, name, {
+        get: () => {
+          looked[name]++;
+          return input.network[name];
+        },
+      });
+    }
+    const lazy = buildResult({ ...input, network });
+    expect(looked).toEqual({ nodeX: 0, reachFrom: 0, segmentX1: 0 });
     lazy.segments.at(0);
-    expect(asked).toBe(1);
+    expect(looked).toEqual({ nodeX: 0, reachFrom: 0, segmentX1: 1 });
+    lazy.nodes.at(0);
+    lazy.reaches.at(0);
+    expect(looked).toEqual({ nodeX: 1, reachFrom: 1, segmentX1: 1 });
   });
 });

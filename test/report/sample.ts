@@ -1,4 +1,4 @@
-import type { Channel, Chip, Fluid, Port } from '../../src/chip/types.ts';
+import type { Channel, Chip, Fluid, Port, PortRun, Run } from '../../src/chip/types.ts';
 import type { Finding, FindingReport } from '../../src/findings/types.ts';
 import type { Network, NetworkTrace } from '../../src/network/types.ts';
 import { resistancePerLength } from '../../src/physics/duct.ts';
@@ -43,11 +43,13 @@ const DEPTH_MM = 0.12;
 export function sampleInput(options: SampleOptions = {}): ResultInput {
   const names = { ...PLAIN, ...options.names };
   const chip = sampleChip(names, options);
+  const run = sampleRun(names, options);
   const network = sampleNetwork(chip);
   const flow = sampleFlow(network, options.feedPa ?? 1_000);
   return {
     tool: { name: 'rillcheck', version: '0.1.0' },
     chip,
+    run,
     network,
     flow,
     findings: findingReport(options.findings ?? sampleFindings(names)),
@@ -158,7 +160,7 @@ const fluid: Fluid = {
   viscosityPaS: waterViscosity(TEMPERATURE_K),
   densityKgM3: waterDensity(TEMPERATURE_K),
   source: 'IAPWS SR6-08(2011)',
-  viscosityAt: waterViscosity,
+  mixture: { kind: 'water' },
 };
 
 const WINDOW: ChannelEntry = {
@@ -172,14 +174,8 @@ const WINDOW: ChannelEntry = {
   mixing: null,
 };
 
-function sampleChip(names: SampleNames, { show = {}, bare = false }: SampleOptions): Chip {
-  const channel = (
-    ordinal: number,
-    name: string,
-    widthMm: number,
-    points: number[],
-    settings: ChannelEntry | null,
-  ): Channel => ({
+function sampleChip(names: SampleNames, { bare = false }: SampleOptions): Chip {
+  const channel = (ordinal: number, name: string, widthMm: number, points: number[]): Channel => ({
     name,
     drawnName: name,
     ordinal,
@@ -202,28 +198,15 @@ function sampleChip(names: SampleNames, { show = {}, bare = false }: SampleOptio
     ],
     disguises: [],
     dataChannel: false,
-    settings,
   });
-  const tubing: TubingPiece[] = [{ boreM: 0.5e-3, lengthM: 0.3, temperatureK: null }];
-  const port = (
-    ordinal: number,
-    name: string,
-    xMm: number,
-    yMm: number,
-    condition: PortCondition,
-    pieces: TubingPiece[] = [],
-  ): Port => ({
+  const port = (ordinal: number, name: string, xMm: number, yMm: number): Port => ({
     name,
     drawnName: name,
     ordinal,
     xMm,
     yMm,
     radiusMm: 1,
-    condition,
-    tubing: pieces,
-    expect: null,
   });
-  const window = bare ? null : WINDOW;
   return {
     file: 'sample.svg',
     layoutSha256: 'a'.repeat(64),
@@ -236,17 +219,13 @@ function sampleChip(names: SampleNames, { show = {}, bare = false }: SampleOptio
       { name: 'lanes', plane: 0, depthM: DEPTH_MM / 1000, depthOrigin: 'run sheet', profile: 'rectangle' },
     ],
     channels: [
-      channel(0, 'inlet', 0.3, [6, 13, 16, 13], null),
-      channel(1, names.upper, 0.5, [16, 13, 16, 6, 60, 6, 60, 13], window),
-      channel(2, names.lower, 0.5, arcLane(), window),
-      channel(3, 'stub', 0.2, [38, 6, 38, 2], null),
-      channel(4, 'outlet', 0.3, [60, 13, 70, 13], null),
+      channel(0, 'inlet', 0.3, [6, 13, 16, 13]),
+      channel(1, names.upper, 0.5, [16, 13, 16, 6, 60, 6, 60, 13]),
+      channel(2, names.lower, 0.5, arcLane()),
+      channel(3, 'stub', 0.2, [38, 6, 38, 2]),
+      channel(4, 'outlet', 0.3, [60, 13, 70, 13]),
     ],
-    ports: [
-      port(5, names.feed, 6, 13, { kind: 'pressure', pressurePa: 1_000 }, tubing),
-      port(6, 'waste', 70, 13, { kind: 'open' }),
-      port(7, 'spare', 38, 2, { kind: 'sealed' }),
-    ],
+    ports: [port(5, names.feed, 6, 13), port(6, 'waste', 70, 13), port(7, 'spare', 38, 2)],
     edge: {
       name: 'chip-edge',
       rings: [Float64Array.from([0, 0, 76, 0, 76, 26, 0, 26, 0, 0])],
@@ -257,13 +236,30 @@ function sampleChip(names: SampleNames, { show = {}, bare = false }: SampleOptio
     unreadLines: [],
     ignored: { text: 3, 'dashed stroke': 1 },
     faults: [],
-    fluid,
     joinWithinMm: 1e-3,
     joints: 'centreline',
     process: null,
+    leastWall: { flatM: 40e-6, perDepth: 0, origin: 'run sheet' },
+  };
+}
+
+function sampleRun(names: SampleNames, { show = {}, bare = false }: SampleOptions): Run {
+  const port = (condition: PortCondition, tubing: readonly TubingPiece[] = []): PortRun => ({
+    condition,
+    tubing,
+    expect: null,
+  });
+  const window = bare ? null : WINDOW;
+  return {
+    fluid,
+    ports: [
+      port({ kind: 'pressure', pressurePa: 1_000 }, [{ boreM: 0.5e-3, lengthM: 0.3, temperatureK: null }]),
+      port({ kind: 'open' }),
+      port({ kind: 'sealed' }),
+    ],
+    channels: [null, window, window, null, null],
     limits: {
       minWidthM: { value: 20e-6, origin: 'run sheet' },
-      minWallM: () => ({ value: 40e-6, origin: 'run sheet' }),
       maxWidthToDepth: null,
       maxDepthToWidth: null,
       edgeMarginM: { value: 2e-3, origin: 'typical value, not from your maker' },
@@ -347,12 +343,12 @@ function sampleSheet(names: SampleNames, show: ShowUnits): RunSheet {
 
 /** Nodes: 0 feed, 1 split, 2 stub junction, 3 merge, 4 waste, 5 spare. */
 const NODES = [
-  { kind: 0, x: 6, y: 13, port: 0 },
-  { kind: 1, x: 16, y: 13, port: -1 },
-  { kind: 1, x: 38, y: 6, port: -1 },
-  { kind: 1, x: 60, y: 13, port: -1 },
-  { kind: 0, x: 70, y: 13, port: 1 },
-  { kind: 0, x: 38, y: 2, port: 2 },
+  { kind: 0, number: 1, x: 6, y: 13, port: 0 },
+  { kind: 1, number: 1, x: 16, y: 13, port: -1 },
+  { kind: 1, number: 2, x: 38, y: 6, port: -1 },
+  { kind: 1, number: 3, x: 60, y: 13, port: -1 },
+  { kind: 0, number: 2, x: 70, y: 13, port: 1 },
+  { kind: 0, number: 3, x: 38, y: 2, port: 2 },
 ] as const;
 
 const REACHES: readonly {
@@ -361,14 +357,13 @@ const REACHES: readonly {
   readonly to: number;
   readonly points: readonly number[];
   readonly number: number;
-  readonly of: number;
 }[] = [
-  { channel: 0, from: 0, to: 1, points: [7, 13, 16, 13], number: 1, of: 1 },
-  { channel: 1, from: 1, to: 2, points: [16, 13, 16, 6, 38, 6], number: 1, of: 2 },
-  { channel: 1, from: 2, to: 3, points: [38, 6, 60, 6, 60, 13], number: 2, of: 2 },
-  { channel: 2, from: 1, to: 3, points: arcLane(), number: 1, of: 1 },
-  { channel: 3, from: 2, to: 5, points: [38, 6, 38, 3], number: 1, of: 1 },
-  { channel: 4, from: 3, to: 4, points: [60, 13, 69, 13], number: 1, of: 1 },
+  { channel: 0, from: 0, to: 1, points: [7, 13, 16, 13], number: 1 },
+  { channel: 1, from: 1, to: 2, points: [16, 13, 16, 6, 38, 6], number: 1 },
+  { channel: 1, from: 2, to: 3, points: [38, 6, 60, 6, 60, 13], number: 2 },
+  { channel: 2, from: 1, to: 3, points: arcLane(), number: 1 },
+  { channel: 3, from: 2, to: 5, points: [38, 6, 38, 3], number: 1 },
+  { channel: 4, from: 3, to: 4, points: [60, 13, 69, 13], number: 1 },
 ];
 
 function sampleNetwork(chip: Chip): Network {
@@ -391,14 +386,6 @@ function sampleNetwork(chip: Chip): Network {
   const duct = REACHES.map((_, reach) =>
     segments.filter((segment) => segment.reach === reach).reduce((sum, { ductMm }) => sum + ductMm, 0),
   );
-  const reachName = (reach: number): string => {
-    const { channel, number, of } = REACHES[reach];
-    return of === 1 ? chip.channels[channel].name : `${chip.channels[channel].name}/${number}`;
-  };
-  const nodeName = (node: number): string => {
-    const { port } = NODES[node];
-    return port >= 0 ? chip.ports[port].name : `node-${node}`;
-  };
   const column = (pick: (segment: (typeof segments)[number]) => number): Float64Array =>
     Float64Array.from(segments, pick);
   return {
@@ -408,6 +395,7 @@ function sampleNetwork(chip: Chip): Network {
     nodeX: Float64Array.from(NODES, ({ x }) => x),
     nodeY: Float64Array.from(NODES, ({ y }) => y),
     nodePort: Int32Array.from(NODES, ({ port }) => port),
+    nodeNumber: Int32Array.from(NODES, ({ number }) => number),
     portNode: Int32Array.of(0, 4, 5),
     reachCount: REACHES.length,
     reachChannel: Int32Array.from(REACHES, ({ channel }) => channel),
@@ -421,7 +409,7 @@ function sampleNetwork(chip: Chip): Network {
     joints: [],
     firstSegment: Int32Array.from(firstSegment),
     reachNumber: Int32Array.from(REACHES, ({ number }) => number),
-    channelReachCount: Int32Array.from(REACHES, ({ of }) => of),
+    channelReachCount: Int32Array.of(1, 2, 1, 1, 1),
     segmentCount: segments.length,
     segmentReach: Int32Array.from(segments, ({ reach }) => reach),
     segmentX1: column(({ at }) => at[0]),
@@ -432,10 +420,6 @@ function sampleNetwork(chip: Chip): Network {
     segmentBendRadiusMm: column(({ bendMm }) => bendMm),
     // the report never looks at how the network came about
     trace: {} as NetworkTrace,
-    nodeName,
-    reachName,
-    segmentName: (segment) =>
-      `${reachName(segments[segment].reach)}#${segment - firstSegment[segments[segment].reach] + 1}`,
   };
 }
 

@@ -29,7 +29,7 @@ describe('the SVG picture', () => {
     }
     const lane = titles.find((text) => text.startsWith('lane-2 ('));
     expect(lane?.split('\n')).toEqual([
-      'lane-2 (node-1 → node-3)',
+      'lane-2 (J1 → J3)',
       'flow 35.73 µL/min',
       'pressure drop 0.385 kPa',
       'floor shear 0.3516 Pa mean, 0.4033 Pa peak',

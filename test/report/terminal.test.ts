@@ -17,8 +17,8 @@ describe('the terminal summary', () => {
       spare  sealed      0.4201 kPa                       0 µL/min
 
       reach             flow  floor shear       peak  residence  window
-      lane-1/1   35.2 µL/min    0.3464 Pa  0.3973 Pa    2.966 s  shear 0.05 to 0.5 Pa over 80 %
-      lane-1/2   35.2 µL/min    0.3464 Pa  0.3973 Pa    2.966 s  shear 0.05 to 0.5 Pa over 80 %
+      lane-1:1   35.2 µL/min    0.3464 Pa  0.3973 Pa    2.966 s  shear 0.05 to 0.5 Pa over 80 %
+      lane-1:2   35.2 µL/min    0.3464 Pa  0.3973 Pa    2.966 s  shear 0.05 to 0.5 Pa over 80 %
       lane-2    35.73 µL/min    0.3516 Pa  0.4033 Pa    5.757 s  shear 0.05 to 0.5 Pa over 80 %
 
       1 blocker thin-wall: 31 µm of material between lane-1 and lane-2 over 8 mm; min_wall is 40 µm (30,

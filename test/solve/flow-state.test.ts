@@ -1,4 +1,5 @@
 import { describe, expect, test } from 'vitest';
+import { waterViscosity } from '../../src/physics/fluid.ts';
 import type { PortCondition, TubingPiece } from '../../src/runsheet/types.ts';
 import { drivesOf, type PortDrive } from '../../src/solve/drives.ts';
 import {
@@ -13,7 +14,7 @@ import { solveGraph } from '../../src/solve/graph.ts';
 import { gradientOfFlow } from '../../src/solve/sensitivity.ts';
 import type { FlowState } from '../../src/solve/types.ts';
 import { randomEdges, randomFrom } from './graphs.ts';
-import { networkOf, type PortSpec, type ReachSpec } from './network-of.ts';
+import { flowOf, networkOf, type PortSpec, type ReachSpec } from './network-of.ts';
 
 /** 100 × 50 µm at 1 mPa s: exact series, Pa s/m³ per 10 mm (computed to many digits elsewhere). */
 const R_PER_10_MM = 1.39932505319e13;
@@ -48,7 +49,7 @@ const tubeOf = (boreM: number, lengthM: number, viscosityPaS = 1e-3) =>
 
 describe('port conditions', () => {
   test('pressure against open: flow = Δp / R, into the chip where the pressure is', () => {
-    const state = solveFlow(networkOf(line, [at(0, pressure(1000)), at(1, OPEN)]));
+    const state = flowOf(networkOf(line, [at(0, pressure(1000)), at(1, OPEN)]));
     expect(state.reachResistance[0] / R_PER_10_MM).toBeCloseTo(1, 11);
     expect(state.reachFlow[0]).toBe(1000 / state.reachResistance[0]);
     expect([...state.portFlow]).toEqual([state.reachFlow[0], -state.reachFlow[0]]);
@@ -62,7 +63,7 @@ describe('port conditions', () => {
   });
 
   test('a head of either sign is ρ g h', () => {
-    const state = solveFlow(
+    const state = flowOf(
       networkOf(line, [at(0, { kind: 'head', headM: -0.04 }), at(1, OPEN)], { densityKgM3: 997 }),
     );
     expect(state.portPressure[0]).toBeCloseTo(-997 * 9.80665 * 0.04, 10);
@@ -70,7 +71,7 @@ describe('port conditions', () => {
   });
 
   test('a given flow enters, and its pressure is found', () => {
-    const state = solveFlow(
+    const state = flowOf(
       networkOf(tee, [at(0, flow(2e-12)), at(1, flow(1e-12)), at(3, pressure(-50)), at(4, UNSET)]),
     );
     expect([...state.portFlow]).toEqual([2e-12, 1e-12, state.portFlow[2], 0]);
@@ -84,7 +85,7 @@ describe('port conditions', () => {
   test('sealed and unset ports carry 0 and have the pressure of the chip there, with tubing or without', () => {
     for (const shut of [SEALED, UNSET]) {
       for (const tubing of [[], [tube(5e-4, 0.3)]]) {
-        const state = solveFlow(networkOf(tee, [at(0, pressure(1000)), at(1, shut, tubing), at(3, OPEN)]));
+        const state = flowOf(networkOf(tee, [at(0, pressure(1000)), at(1, shut, tubing), at(3, OPEN)]));
         expect(state.portFlow[1]).toBe(0);
         expect(state.reachFlow[1]).toBe(0);
         expect(state.portPressure[1]).toBe(state.nodePressure[2]);
@@ -94,7 +95,7 @@ describe('port conditions', () => {
   });
 
   test('all pressures equal: nothing flows, exactly', () => {
-    const state = solveFlow(
+    const state = flowOf(
       networkOf(tee, [at(0, pressure(1e5 / 3)), at(1, pressure(1e5 / 3)), at(3, pressure(1e5 / 3))]),
     );
     expect(state.reachFlow).toEqual(new Float64Array(4));
@@ -105,10 +106,12 @@ describe('port conditions', () => {
 
 describe('tubing', () => {
   test('lies in series at the port, each piece at its own temperature', () => {
-    const viscosityAt = (temperatureK: number) => 1e-3 * (1 + (298.15 - temperatureK) / 50);
     const tubing = [tube(1e-4, 0.3, 288.15), tube(5e-5, 0.08)];
-    const state = solveFlow(networkOf(line, [at(0, pressure(2e4), tubing), at(1, OPEN)], { viscosityAt }));
-    const R = tubeOf(1e-4, 0.3, 1.2e-3) + tubeOf(5e-5, 0.08);
+    const state = flowOf(
+      networkOf(line, [at(0, pressure(2e4), tubing), at(1, OPEN)], { mixture: { kind: 'water' } }),
+    );
+    // a piece with no temperature of its own has the chip's fluid, 1 mPa s here whatever water has
+    const R = tubeOf(1e-4, 0.3, waterViscosity(288.15)) + tubeOf(5e-5, 0.08);
     expect(state.tubingResistance[0] / R).toBeCloseTo(1, 14);
     expect(state.tubingResistance[1]).toBe(0);
     expect((state.portFlow[0] * (R + state.reachResistance[0])) / 2e4).toBeCloseTo(1, 13);
@@ -119,15 +122,15 @@ describe('tubing', () => {
 
   test('on a syringe pump raises the supply pressure by R·Q and changes nothing in the chip', () => {
     const ports = (tubing: readonly TubingPiece[]) => [at(0, flow(1e-10), tubing), at(1, OPEN)];
-    const bare = solveFlow(networkOf(line, ports([])));
-    const tubed = solveFlow(networkOf(line, ports([tube(1e-4, 0.1)])));
+    const bare = flowOf(networkOf(line, ports([])));
+    const tubed = flowOf(networkOf(line, ports([tube(1e-4, 0.1)])));
     expect(tubed.reachFlow).toEqual(bare.reachFlow);
     expect(tubed.portPressure[0]).toBeCloseTo(bare.portPressure[0], 9);
     expect(tubed.supplyPressure[0] - tubed.portPressure[0]).toBeCloseTo(tubeOf(1e-4, 0.1) * 1e-10, 9);
   });
 
   test('of no length is no tubing', () => {
-    const state = solveFlow(networkOf(line, [at(0, pressure(1000), [tube(1e-4, 0)]), at(1, OPEN)]));
+    const state = flowOf(networkOf(line, [at(0, pressure(1000), [tube(1e-4, 0)]), at(1, OPEN)]));
     expect([...state.supplyPressure]).toEqual([...state.portPressure]);
   });
 });
@@ -135,7 +138,7 @@ describe('tubing', () => {
 describe('parts', () => {
   test('flows alone that add up give flows but no pressures', () => {
     const third = 1e-10 / 3;
-    const state = solveFlow(
+    const state = flowOf(
       networkOf(tee, [at(0, flow(third)), at(1, flow(2 * third)), at(3, flow(-1e-10)), at(4, SEALED)]),
     );
     expect(state.parts[0]).toMatchObject({ status: 'no-reference' });
@@ -149,7 +152,7 @@ describe('parts', () => {
   });
 
   test('flows alone that miss by rounding of the run sheet are balanced at the largest of them', () => {
-    const state = solveFlow(
+    const state = flowOf(
       networkOf(tee, [at(0, flow(1e-15)), at(1, flow(1e-10)), at(3, flow(-1e-10 - 1e-15 - 5e-20))]),
     );
     expect(state.parts[0].status).toBe('no-reference');
@@ -161,13 +164,13 @@ describe('parts', () => {
 
   test('flows alone add up where they miss by less than a billionth of the largest, and not beyond', () => {
     const missing = (share: number): string =>
-      solveFlow(networkOf(tee, [at(0, flow(1e-10)), at(3, flow(-1e-10 * (1 - share)))])).parts[0].status;
+      flowOf(networkOf(tee, [at(0, flow(1e-10)), at(3, flow(-1e-10 * (1 - share)))])).parts[0].status;
     expect(missing(0.9e-9)).toBe('no-reference');
     expect(missing(1.1e-9)).toBe('flows-do-not-add-up');
   });
 
   test('flows alone that do not add up give nothing but their sum', () => {
-    const state = solveFlow(networkOf(tee, [at(0, flow(1e-10)), at(3, flow(-0.9e-10))]));
+    const state = flowOf(networkOf(tee, [at(0, flow(1e-10)), at(3, flow(-0.9e-10))]));
     expect(state.parts[0].status).toBe('flows-do-not-add-up');
     expect(state.parts[0].flowSumM3s).toBeCloseTo(1e-11, 25);
     nothingKnown(state);
@@ -175,9 +178,7 @@ describe('parts', () => {
 
   test('a part where nothing is set is no-drive, beside one that is solved', () => {
     const reaches = [...line, { from: 2, to: 3, lengthMm: 1 }];
-    const state = solveFlow(
-      networkOf(reaches, [at(0, pressure(10)), at(1, OPEN), at(2, UNSET), at(3, SEALED)]),
-    );
+    const state = flowOf(networkOf(reaches, [at(0, pressure(10)), at(1, OPEN), at(2, UNSET), at(3, SEALED)]));
     expect(state.parts.map(({ status }) => status)).toEqual(['solved', 'no-drive']);
     expect([...state.nodePart]).toEqual([0, 0, 1, 1]);
     expect(state.reachFlow[0]).toBeGreaterThan(0);
@@ -192,7 +193,7 @@ describe('parts', () => {
       { from: 2, to: 5, lengthMm: 1, depthMm: Number.NaN },
       { from: 6, to: 7, lengthMm: 10 },
     ];
-    const state = solveFlow(
+    const state = flowOf(
       networkOf(reaches, [at(0, pressure(10)), at(3, OPEN), at(6, pressure(1)), at(7, OPEN)]),
     );
     expect(state.parts.map(({ status }) => status)).toEqual(['unsized', 'solved']);
@@ -202,23 +203,23 @@ describe('parts', () => {
   });
 
   test('two ports that hold one node at different pressures conflict; at one pressure nothing tells their shares', () => {
-    const conflict = solveFlow(networkOf(line, [at(0, pressure(10)), at(0, OPEN), at(1, OPEN)]));
+    const conflict = flowOf(networkOf(line, [at(0, pressure(10)), at(0, OPEN), at(1, OPEN)]));
     expect(conflict.parts[0].status).toBe('conflict');
     nothingKnown(conflict);
-    const shared = solveFlow(networkOf(line, [at(0, pressure(10)), at(0, pressure(10)), at(1, OPEN)]));
+    const shared = flowOf(networkOf(line, [at(0, pressure(10)), at(0, pressure(10)), at(1, OPEN)]));
     expect(shared.parts[0].status).toBe('solved');
     expect([shared.portFlow[0], shared.portFlow[1]]).toEqual([Number.NaN, Number.NaN]);
     expect(shared.portFlow[2]).toBe(-shared.reachFlow[0]);
   });
 
   test('ports of one node may hold its pressure and give it a flow', () => {
-    const state = solveFlow(networkOf(line, [at(0, flow(3e-12)), at(0, pressure(100)), at(1, OPEN)]));
+    const state = flowOf(networkOf(line, [at(0, flow(3e-12)), at(0, pressure(100)), at(1, OPEN)]));
     expect(state.portFlow[0]).toBe(3e-12);
     expect(state.portFlow[1]).toBeCloseTo(state.reachFlow[0] - 3e-12, 26);
   });
 
   test('ports without any channel are parts of their own', () => {
-    const state = solveFlow(
+    const state = flowOf(
       networkOf([], [at(0, pressure(5)), at(1, flow(1e-12)), at(2, SEALED), at(3, flow(0))]),
     );
     expect(state.parts.map(({ status }) => status)).toEqual([
@@ -232,7 +233,7 @@ describe('parts', () => {
   });
 
   test('a network of nothing has nothing', () => {
-    expect(solveFlow(networkOf([], []))).toMatchObject({ parts: [], worstImbalance: 0, worstNode: -1 });
+    expect(flowOf(networkOf([], []))).toMatchObject({ parts: [], worstImbalance: 0, worstNode: -1 });
   });
 });
 
@@ -258,8 +259,8 @@ describe('random networks', () => {
 
   test('balance below 1e-12, keep Δp = R·Q on every reach, and give in what they take out', () => {
     for (let seed = 1; seed <= 120; seed++) {
-      const network = randomNetwork(seed);
-      const state = solveFlow(network);
+      const { network, run } = randomNetwork(seed);
+      const state = solveFlow(network, run);
       expect(state.parts[0].status).toBe('solved');
       expect(state.worstImbalance, `seed ${seed}`).toBeLessThan(1e-12);
       const largest = Math.max(...state.portFlow.map(Math.abs));
@@ -276,9 +277,9 @@ describe('random networks', () => {
 
   test('answer a flow-driven port and the pressure found for it alike', () => {
     for (let seed = 1; seed <= 40; seed++) {
-      const network = randomNetwork(seed);
-      const drives = drivesOf(network.chip);
-      const prepared = prepareFlow(network);
+      const { network, run } = randomNetwork(seed);
+      const drives = drivesOf(run);
+      const prepared = prepareFlow(network, run);
       const state = flowStateOf(factorFlow(prepared, kindsOf(drives)), drives);
       const swapped = drives.map(
         (drive, port): PortDrive =>
@@ -295,11 +296,15 @@ describe('random networks', () => {
 });
 
 describe('phases', () => {
-  const network = networkOf(tee, [at(0, pressure(1000), [tube(2e-4, 0.1)]), at(1, flow(1e-12)), at(3, OPEN)]);
-  const drives = drivesOf(network.chip);
+  const { network, run } = networkOf(tee, [
+    at(0, pressure(1000), [tube(2e-4, 0.1)]),
+    at(1, flow(1e-12)),
+    at(3, OPEN),
+  ]);
+  const drives = drivesOf(run);
 
   test('analyse once for each set of fixed and injected ports', () => {
-    const prepared = prepareFlow(network);
+    const prepared = prepareFlow(network, run);
     const first = factorFlow(prepared, kindsOf(drives));
     const doubled = {
       reach: prepared.nominal.reach.map((R) => 2 * R),
@@ -311,7 +316,7 @@ describe('phases', () => {
     const halved = drives.map(
       (drive): PortDrive => (drive.kind === 'flow' ? { kind: 'flow', flowM3s: drive.flowM3s / 2 } : drive),
     );
-    const state = solveFlow(network);
+    const state = solveFlow(network, run);
     const slower = flowStateOf(second, halved);
     slower.reachFlow.forEach((q, r) => {
       expect(q).toBeCloseTo(state.reachFlow[r] / 2, 26);
@@ -321,14 +326,14 @@ describe('phases', () => {
   });
 
   test('refuse drives of another kind than was factored', () => {
-    const factor = factorFlow(prepareFlow(network), kindsOf(drives));
+    const factor = factorFlow(prepareFlow(network, run), kindsOf(drives));
     expect(() => flowStateOf(factor, [drives[0], { kind: 'none' }, drives[2]])).toThrow(
       'port 1 is driven by none, but flow was factored',
     );
   });
 
   test('give sensitivities that agree with solving again', () => {
-    const prepared = prepareFlow(network);
+    const prepared = prepareFlow(network, run);
     const factor = factorFlow(prepared, kindsOf(drives));
     const load = loadOf(factor, drives);
     const gradient = gradientOfFlow(factor.graphFactor, solveGraph(factor.graphFactor, load), 2);

@@ -7,13 +7,13 @@ describe('how far joints that are not resolved could move flows and pressures', 
   it('is what finite differences give, for every port and reach of 60 random chips, both ways', () => {
     let compared = 0;
     for (let seed = 1; seed <= 60; seed++) {
-      const network = randomGrid(seed);
-      const wanted = sharesAnew(network, 1e-3);
-      const all = sharesOf(network);
+      const grid = randomGrid(seed);
+      const wanted = sharesAnew(grid, 1e-3);
+      const all = sharesOf(grid);
       for (const name of ['portFlow', 'portPressure', 'reachFlow'] as const) {
         compared += expectClose(all[name], wanted[name], 1e-4, `seed ${seed} ${name}`);
         compared += expectClose(
-          sharesOf(network, 200)[name],
+          sharesOf(grid, 200)[name],
           wanted[name],
           1e-4,
           `seed ${seed} adjoint ${name}`,
@@ -25,9 +25,9 @@ describe('how far joints that are not resolved could move flows and pressures', 
 
   it('is what the whole bound moves, but for its second order', () => {
     for (let seed = 1; seed <= 10; seed++) {
-      const network = randomGrid(seed);
-      const wanted = sharesAnew(network, 1);
-      const { portPressure, reachFlow } = sharesOf(network);
+      const grid = randomGrid(seed);
+      const wanted = sharesAnew(grid, 1);
+      const { portPressure, reachFlow } = sharesOf(grid);
       expectClose(portPressure, wanted.portPressure, 0.1, `seed ${seed} port pressure`);
       expectClose(reachFlow, wanted.reachFlow, 0.1, `seed ${seed} reach flow`);
     }
@@ -38,8 +38,11 @@ describe('how far joints that are not resolved could move flows and pressures', 
       { head: 'M5 10H40', one: 'M20 10V30', two: 'M40 10V30', foot: 'M20 30H55' },
       { feed: [5, 10], waste: [55, 30] },
     ).replace('data-name="two"', 'data-name="two" stroke-width="0.3"');
-    const network = networkFrom(svg, 'depth: 80 um\nports: { feed: { flow: 10 uL/min }, waste: open }\n');
-    const shares = sharesOf(network);
+    const { network, run } = networkFrom(
+      svg,
+      'depth: 80 um\nports: { feed: { flow: 10 uL/min }, waste: open }\n',
+    );
+    const shares = sharesOf({ network, run });
     const [feed, waste] = ['feed', 'waste'].map((name) =>
       network.chip.ports.findIndex((port) => port.name === name),
     );

@@ -1,6 +1,6 @@
 import { expect } from 'vitest';
-import type { Network } from '../../src/network/types.ts';
 import { drivesOf } from '../../src/solve/drives.ts';
+import type { RunNetwork } from '../../src/solve/flow-network.ts';
 import { factorFlow, flowStateOf, kindsOf, prepareFlow, solveFlow } from '../../src/solve/flow-state.ts';
 import { type JointShares, jointShares } from '../../src/solve/joint-share.ts';
 import type { FlowState } from '../../src/solve/types.ts';
@@ -8,15 +8,15 @@ import { randomFrom } from './graphs.ts';
 import { gridDrawing } from './grid-drawing.ts';
 import { networkFrom } from './network-from.ts';
 
-export function sharesOf(network: Network, mostWork?: number): JointShares {
-  const drives = drivesOf(network.chip);
-  const factor = factorFlow(prepareFlow(network), kindsOf(drives));
-  return jointShares(network, factor, drives, flowStateOf(factor, drives), mostWork);
+export function sharesOf({ network, run }: RunNetwork, mostWork?: number): JointShares {
+  const drives = drivesOf(run);
+  const factor = factorFlow(prepareFlow(network, run), kindsOf(drives));
+  return jointShares({ network, run }, factor, drives, flowStateOf(factor, drives), mostWork);
 }
 
 /** The same by solving anew: what each reach's bound times `scale` moves, the worse way, all added up and scaled back. */
-export function sharesAnew(network: Network, scale: number): JointShares {
-  const base = solveFlow(network);
+export function sharesAnew({ network, run }: RunNetwork, scale: number): JointShares {
+  const base = solveFlow(network, run);
   const names = ['portFlow', 'portPressure', 'reachFlow'] as const;
   const moved = names.map((name) => new Float64Array(base[name].length));
   for (let r = 0; r < network.reachCount; r++) {
@@ -25,7 +25,7 @@ export function sharesAnew(network: Network, scale: number): JointShares {
     const [longer, shorter] = [bound, -bound].map((more): FlowState => {
       const reachDuctMm = network.reachDuctMm.slice();
       reachDuctMm[r] += more;
-      return solveFlow({ ...network, reachDuctMm });
+      return solveFlow({ ...network, reachDuctMm }, run);
     });
     names.forEach((name, k) => {
       for (let i = 0; i < moved[k].length; i++)
@@ -37,7 +37,7 @@ export function sharesAnew(network: Network, scale: number): JointShares {
 }
 
 /** A grid with ports of all kinds, with and without tubing, at its corners and sides; one part of its width and depths unequal. */
-export function randomGrid(seed: number): Network {
+export function randomGrid(seed: number): RunNetwork {
   const random = randomFrom(seed);
   const pick = <T>(of: readonly T[]): T => of[Math.floor(random() * of.length)];
   const { svg, ports } = gridDrawing(

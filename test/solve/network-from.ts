@@ -1,19 +1,19 @@
 import { assembleChip } from '../../src/chip/assemble.ts';
 import { layOut } from '../../src/layout/layout.ts';
 import { buildNetwork } from '../../src/network/build.ts';
-import type { Network } from '../../src/network/types.ts';
 import { parseRunSheet } from '../../src/runsheet/parse.ts';
+import type { RunNetwork } from '../../src/solve/flow-network.ts';
 import { readSvg } from '../../src/svg/read.ts';
 
-/** The network of a drawing under a run sheet, by the whole chain of steps. */
-export function networkFrom(svg: string, sheet: string): Network {
-  const chip = assembleChip({
+/** The network of a drawing and its run under a run sheet, by the whole chain of steps. */
+export function networkFrom(svg: string, sheet: string): RunNetwork {
+  const { chip, run } = assembleChip({
     layout: layOut(readSvg(svg, 'chip.svg'), 'chip.svg'),
     sheet: parseRunSheet(sheet, 'chip.run.yaml'),
     file: 'chip.svg',
     layoutSha256: '0'.repeat(64),
   });
-  return buildNetwork(chip);
+  return { network: buildNetwork(chip), run };
 }
 
 /** A drawing of 60 × 40 mm with named strokes 0.2 mm wide and ports of 1 mm. */

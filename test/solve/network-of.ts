@@ -1,6 +1,8 @@
 import type { Fluid } from '../../src/chip/types.ts';
 import type { PortCondition, TubingPiece } from '../../src/runsheet/types.ts';
-import type { FlowNetwork } from '../../src/solve/flow-network.ts';
+import type { FlowNetwork, FlowRun } from '../../src/solve/flow-network.ts';
+import { solveFlow } from '../../src/solve/flow-state.ts';
+import type { FlowState } from '../../src/solve/types.ts';
 
 export interface ReachSpec {
   readonly from: number;
@@ -18,33 +20,48 @@ export interface PortSpec {
   readonly tubing?: readonly TubingPiece[];
 }
 
+/** A network and how it is run, as far as its flow goes. */
+export interface FlowSpec {
+  readonly network: FlowNetwork;
+  readonly run: FlowRun;
+}
+
 /** A network without a drawing: each reach is a channel of its own, 100 × 50 µm unless said, full of a fluid of 1 mPa s and 1000 kg/m³ unless said. */
 export function networkOf(
   reaches: readonly ReachSpec[],
   ports: readonly PortSpec[],
   fluid: Partial<Fluid> = {},
-): FlowNetwork {
+): FlowSpec {
   return {
-    chip: {
+    run: {
       fluid: {
         name: 'as given',
         temperatureK: 298.15,
         viscosityPaS: 1e-3,
         densityKgM3: 1000,
         source: 'run sheet',
-        viscosityAt: () => 1e-3,
+        mixture: { kind: 'custom' },
         ...fluid,
       },
       ports: ports.map(({ condition, tubing = [] }) => ({ condition, tubing })),
-      channels: reaches.map(({ widthMm = 0.1, depthMm = 0.05 }) => ({ ductWidthMm: widthMm, depthMm })),
     },
-    nodeCount:
-      1 + Math.max(-1, ...reaches.flatMap(({ from, to }) => [from, to]), ...ports.map(({ node }) => node)),
-    portNode: Int32Array.from(ports, ({ node }) => node),
-    reachCount: reaches.length,
-    reachChannel: Int32Array.from(reaches, (_, r) => r),
-    reachFrom: Int32Array.from(reaches, ({ from }) => from),
-    reachTo: Int32Array.from(reaches, ({ to }) => to),
-    reachDuctMm: Float64Array.from(reaches, ({ lengthMm }) => lengthMm),
+    network: {
+      chip: {
+        channels: reaches.map(({ widthMm = 0.1, depthMm = 0.05 }) => ({ ductWidthMm: widthMm, depthMm })),
+      },
+      nodeCount:
+        1 + Math.max(-1, ...reaches.flatMap(({ from, to }) => [from, to]), ...ports.map(({ node }) => node)),
+      portNode: Int32Array.from(ports, ({ node }) => node),
+      reachCount: reaches.length,
+      reachChannel: Int32Array.from(reaches, (_, r) => r),
+      reachFrom: Int32Array.from(reaches, ({ from }) => from),
+      reachTo: Int32Array.from(reaches, ({ to }) => to),
+      reachDuctMm: Float64Array.from(reaches, ({ lengthMm }) => lengthMm),
+    },
   };
+}
+
+/** The flow of such a network. */
+export function flowOf({ network, run }: FlowSpec): FlowState {
+  return solveFlow(network, run);
 }

@@ -9,7 +9,8 @@ describe('nominalResistances', () => {
     const reaches = sizes.flatMap((widthMm) =>
       sizes.flatMap((depthMm) => [3, 7].map((lengthMm) => ({ from: 0, to: 1, widthMm, depthMm, lengthMm }))),
     );
-    const { reach, tubing } = nominalResistances(networkOf(reaches, []));
+    const { network, run } = networkOf(reaches, []);
+    const { reach, tubing } = nominalResistances(network, run);
     reaches.forEach(({ widthMm, depthMm, lengthMm }, r) => {
       const exact = resistancePerLength(widthMm / 1000, depthMm / 1000, 1e-3) * (lengthMm / 1000);
       expect(reach[r] / exact).toBeCloseTo(1, 14);
@@ -22,6 +23,7 @@ describe('nominalResistances', () => {
       { from: 0, to: 1, lengthMm: 1, depthMm: Number.NaN },
       { from: 0, to: 1, lengthMm: 1, widthMm: Number.NaN },
     ];
-    expect([...nominalResistances(networkOf(reaches, [])).reach]).toEqual([Number.NaN, Number.NaN]);
+    const { network, run } = networkOf(reaches, []);
+    expect([...nominalResistances(network, run).reach]).toEqual([Number.NaN, Number.NaN]);
   });
 });

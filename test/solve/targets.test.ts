@@ -1,6 +1,6 @@
-import { reachName } from '../../src/network/names.ts';
 import { lusolve } from 'mathjs';
 import { describe, expect, it } from 'vitest';
+import { reachName } from '../../src/network/names.ts';
 import { ductForm } from '../../src/physics/duct.ts';
 import { nominalResistances } from '../../src/solve/resistances.ts';
 import { findSettings } from '../../src/solve/targets.ts';
@@ -27,15 +27,15 @@ const PORTS = `  a: { pressure: 3 kPa, ${TUBING} }\n  b: { flow: 5 uL/min, ${TUB
 
 describe('findSettings', () => {
   it('meets two targets by two ports, one a pressure and one a flow, as a dense solve of the whole network does', () => {
-    const network = networkFrom(
+    const bridged = networkFrom(
       BRIDGE,
       bridge(
         PORTS,
         '  - { channel: out-1, flow: 7 uL/min, by: a }\n  - { channel: bridge, wall_shear: 0.15 Pa, at: peak, by: b }',
       ),
     );
-    const found = findSettings(network);
-    const { pressure, flow } = denseBridge(network, found.flow.reachFlow);
+    const found = findSettings(bridged);
+    const { pressure, flow } = denseBridge(bridged, found.flow.reachFlow);
     expect(found.conditions[0]).toMatchObject({ kind: 'pressure' });
     expect(found.conditions[1]).toMatchObject({ kind: 'flow' });
     expect(rel(found.targets[0].response.setting, pressure)).toBeLessThan(1e-10);
@@ -103,14 +103,14 @@ describe('findSettings', () => {
   });
 
   it('reaches the pressure of a node, of a port in the chip behind its tubing, and a residence time', () => {
-    const network = networkFrom(
+    const { network, run } = networkFrom(
       BRIDGE,
       bridge(
         PORTS,
         '  - { port: a, pressure: 2 kPa, by: a }\n  - { channel: in-2, residence_time: 3 s, by: b }\n  - { node: J1, pressure: 700 Pa, by: d }',
       ),
     );
-    const { targets, flow } = findSettings(network);
+    const { targets, flow } = findSettings({ network, run });
     expect(rel(flow.portPressure[0], 2000)).toBeLessThan(1e-12);
     const reach = [0, 1, 2, 3, 4].find((r) => reachName(network, r) === 'in-2') ?? -1;
     const volume = 0.2e-3 * 80e-6 * ((network.reachDuctMm[reach] - network.reachJointMm[reach]) / 1e3);
@@ -120,11 +120,11 @@ describe('findSettings', () => {
 
   it('counts as room for a residence time what a joint adds as resistance not', () => {
     const svg = drawing({ main: 'M5 10H50', side: 'M25 10V30' }, { a: [5, 10], b: [50, 10], c: [25, 30] });
-    const network = networkFrom(
+    const { network, run } = networkFrom(
       svg,
       'depth: 80 um\nports: { a: open, b: open, c: open }\ntargets:\n  - { channel: side, residence_time: 4 s, by: c }',
     );
-    const { flow, targets } = findSettings(network);
+    const { flow, targets } = findSettings({ network, run });
     const [reach] = [0, 1, 2].filter((r) => reachName(network, r) === 'side');
     expect(network.reachJointMm[reach]).not.toBe(0);
     const room = (network.reachDuctMm[reach] - network.reachJointMm[reach]) / 1e3;
@@ -184,11 +184,11 @@ describe('findSettings', () => {
     it('sets the middle of what the pump can do of it', () => {
       const low = settingFor('wall_shear: 0.1 Pa');
       const limit = settingFor('wall_shear: 0.2 Pa');
-      const network = networkFrom(
+      const limited = networkFrom(
         BRIDGE,
         sheet('wall_shear: { min: 0.1 Pa, max: 2 Pa }', `pump_limits: { a: { max_pressure: ${limit} Pa } }`),
       );
-      const [{ response, reach, range }] = findSettings(network).targets;
+      const [{ response, reach, range }] = findSettings(limited).targets;
       expect(rel(response.setting, (low + limit) / 2)).toBeLessThan(1e-9);
       expect(reach?.isWithin).toBe(true);
       expect(range?.high).toBeGreaterThan(limit);
@@ -365,13 +365,13 @@ function rel(a: number, b: number): number {
  * flow of b. Rows: Kirchhoff's first law at the five nodes, then the two targets. Only resistances come from the program.
  */
 function denseBridge(
-  network: ReturnType<typeof networkFrom>,
+  { network, run }: ReturnType<typeof networkFrom>,
   foundFlow: Float64Array,
 ): { pressure: number; flow: number } {
-  const { reach, tubing } = nominalResistances(network);
+  const { reach, tubing } = nominalResistances(network, run);
   const r = (name: string): number => [0, 1, 2, 3, 4].map((i) => reachName(network, i)).indexOf(name);
   const g = (name: string): number => 1 / reach[r(name)];
-  const { viscosityPaS } = network.chip.fluid;
+  const { viscosityPaS } = run.fluid;
   const form = ductForm(0.2e-3, 80e-6);
   const bridgeFlow = 0.15 / (form.floorPeak * viscosityPaS * form.resistance);
   // which way the bridge flows is the program's rule, tested elsewhere; the size is what is asked here

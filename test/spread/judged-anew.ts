@@ -1,8 +1,9 @@
-import type { Chip } from '../../src/chip/types.ts';
+import { densityAt, feelsTemperature, viscosityAt } from '../../src/chip/fluid.ts';
+import type { Chip, Fluid, Run } from '../../src/chip/types.ts';
 import { findAll } from '../../src/findings/check.ts';
 import { RULES } from '../../src/findings/rules.ts';
-import type { Network } from '../../src/network/types.ts';
 import type { TargetEntry } from '../../src/runsheet/types.ts';
+import type { RunNetwork } from '../../src/solve/flow-network.ts';
 import { solveFlow } from '../../src/solve/flow-state.ts';
 import { observe, readTargets, targetValue } from '../../src/solve/targets-wanted.ts';
 import type { FlowState } from '../../src/solve/types.ts';
@@ -26,27 +27,28 @@ const RULES_OF_FLOW = RULES.filter(({ names }) => names.some((name) => FLOW_RULE
  * 1 for each draw that keeps all that is asked, found a second way: every draw is made a chip of its own, solved and judged by the
  * rules that a check runs; windows of targets by what the command pump observes.
  */
-export function goodDraws({ network, tolerances }: Varying, draws: number, seed: number): number[] {
-  const { variables } = listVariables(network.chip, tolerances);
+export function goodDraws({ network, run, tolerances }: Varying, draws: number, seed: number): number[] {
+  const { variables } = listVariables({ network, run }, tolerances);
   const { uniform } = drawSource(seed);
   return Array.from({ length: draws }, (_, i) => {
     const x = variables.map(({ tolerance }, k) => deviate(tolerance, uniform(k, i)));
-    return isGood({ ...network, chip: variedChip(network.chip, variables, x) }) ? 1 : 0;
+    const deviation = deviationOf(variables, x);
+    const varied = { ...network, chip: variedChip(network.chip, deviation) };
+    return isGood({ network: varied, run: variedRun(run, deviation) }) ? 1 : 0;
   });
 }
 
-function isGood(network: Network): boolean {
-  const { chip } = network;
-  const flow = solveFlow(network);
-  const { findings } = findAll({ chip, network, flow }, RULES_OF_FLOW);
+function isGood({ network, run }: RunNetwork): boolean {
+  const flow = solveFlow(network, run);
+  const { findings } = findAll({ chip: network.chip, run, network, flow }, RULES_OF_FLOW);
   return (
     findings.every(({ rule, accepted }) => !FLOW_RULES.has(rule) || accepted !== null) &&
-    keepsTargets(network, flow)
+    keepsTargets({ network, run }, flow)
   );
 }
 
-function keepsTargets(network: Network, flow: FlowState): boolean {
-  return readTargets(network).every(({ entry, observed, measure }) => {
+function keepsTargets(at: RunNetwork, flow: FlowState): boolean {
+  return readTargets(at).every(({ entry, observed, measure }) => {
     const value = targetValue(measure, observe(flow, observed));
     return typeof entry.value === 'number' || isWithin(entry.value, value);
   });
@@ -56,13 +58,19 @@ function isWithin({ min, max }: Exclude<TargetEntry['value'], number>, value: nu
   return !(min !== null && value < min) && !(max !== null && value > max);
 }
 
-/** The chip with one draw's deviations in it. Lengths and joins stay those of the drawing, as the model of the spread has them. */
-function variedChip(chip: Chip, variables: readonly Variable[], x: readonly number[]): Chip {
-  const sum = (isMeant: (variable: Variable) => boolean, value: number): number =>
+/** By how much one draw changes a value: the sum over the variables meant. */
+type Deviation = (isMeant: (variable: Variable) => boolean, value: number) => number;
+
+function deviationOf(variables: readonly Variable[], x: readonly number[]): Deviation {
+  return (isMeant, value) =>
     variables.reduce((total, variable, k) => {
       if (!isMeant(variable)) return total;
       return total + (variable.tolerance.kind === 'relative' ? x[k] * value : x[k]);
     }, 0);
+}
+
+/** The chip with one draw's deviations in it. Lengths and joins stay those of the drawing, as the model of the spread has them. */
+function variedChip(chip: Chip, sum: Deviation): Chip {
   const channels = chip.channels.map((channel, c) => {
     const depthMm =
       channel.depthMm +
@@ -81,21 +89,26 @@ function variedChip(chip: Chip, variables: readonly Variable[], x: readonly numb
     const ductWidthMm = drawnWidthMm + (channel.profile === 'isotropic' ? (Math.PI * depthMm) / 2 : 0);
     return { ...channel, depthMm, drawnWidthMm, ductWidthMm };
   });
-  const kelvin = chip.fluid.temperatureK + sum(({ kind }) => kind === 'temperature', 0);
+  return { ...chip, channels };
+}
+
+/** The run with the deviations of the same draw in it. */
+function variedRun(run: Run, sum: Deviation): Run {
+  const kelvin = run.fluid.temperatureK + sum(({ kind }) => kind === 'temperature', 0);
   const thinning = 1 + sum(({ kind }) => kind === 'viscosity', 1);
-  const { viscosityAt, densityAt } = chip.fluid;
-  const fluid = {
-    ...chip.fluid,
+  const fluid: Fluid = {
+    ...run.fluid,
     temperatureK: kelvin,
-    viscosityPaS: viscosityAt(kelvin) * thinning,
-    densityKgM3: densityAt?.(kelvin) ?? chip.fluid.densityKgM3,
-    viscosityAt: (other: number) => viscosityAt(other) * thinning,
+    viscosityPaS: viscosityAt(run.fluid, kelvin) * thinning,
+    densityKgM3: densityAt(run.fluid, kelvin),
   };
-  const ports = chip.ports.map((port, p) => {
+  const ports = run.ports.map((port, p) => {
     const { condition } = port;
     const tubing = port.tubing.map((piece) => ({
       ...piece,
       boreM: piece.boreM + sum(({ kind }) => kind === 'bore', piece.boreM),
+      // a piece at a temperature of its own is found from the mixture, which knows no thinning: its length bears it
+      lengthM: piece.lengthM * (piece.temperatureK !== null && feelsTemperature(fluid) ? thinning : 1),
     }));
     if (condition.kind === 'pressure') {
       const { pressurePa } = condition;
@@ -109,5 +122,5 @@ function variedChip(chip: Chip, variables: readonly Variable[], x: readonly numb
     }
     return { ...port, tubing };
   });
-  return { ...chip, channels, fluid, ports };
+  return { ...run, fluid, ports };
 }

@@ -43,9 +43,9 @@ layers: { heads: { depth: 150 um }, lanes: { depth: 80 um${chance(0.2) ? ', prof
 ports: { feed: { ${drive}${tubing} }, waste: open, spare: ${chance(0.5) ? 'sealed' : 'open'} }
 tolerances: { depth: ${between(1, 6).toFixed(2)} %, width${chance(0.5) ? '' : '_own'}: ${between(2, 12).toFixed(1)} um, temperature: 2 degC, viscosity: 2 %, pressure: 2 %, flow: 2 %, bore: 2 % }
 `;
-  const { network } = varying(drawing, base);
+  const { network, run } = varying(drawing, base);
   const { chip } = network;
-  const flow = solveFlow(network);
+  const flow = solveFlow(network, run);
   /** A window round a value, at about one standard deviation, open on one side as often as not. */
   const window = (value: number, unit: string, si: number, most = value): string => {
     const ends = [(between(0.85, 0.99) * value) / si, (between(1.01, 1.15) * most) / si];
@@ -59,7 +59,7 @@ tolerances: { depth: ${between(1, 6).toFixed(2)} %, width${chance(0.5) ? '' : '_
     const { profile, ductWidthMm, depthMm } = chip.channels[network.reachChannel[reach]];
     const form = sectionForm(profile, ductWidthMm / 1000, depthMm / 1000);
     const size = Math.abs(flow.reachFlow[reach]);
-    const gradient = chip.fluid.viscosityPaS * form.resistance * size;
+    const gradient = run.fluid.viscosityPaS * form.resistance * size;
     const roomM = (network.reachDuctMm[reach] - network.reachJointMm[reach]) / 1000;
     return {
       flow: window(size, 'uL/min', 1e-9 / 60),

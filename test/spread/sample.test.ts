@@ -58,16 +58,16 @@ test('a draw depends on the seed and its number alone: any split gives the same 
     for (const i of order) draw(i, columns);
   }
   expect(split).toEqual(whole);
-  const { network, tolerances } = made;
+  const { tolerances } = made;
   const [short, long] = [
-    await spreadOf(network, tolerances, { draws: 100, seed: 3 }),
-    await spreadOf(network, tolerances, { draws: 250, seed: 3 }),
+    await spreadOf(made, tolerances, { draws: 100, seed: 3 }),
+    await spreadOf(made, tolerances, { draws: 250, seed: 3 }),
   ];
   short.outputs.forEach(({ column }, o) => {
     expect(long.outputs[o].column.subarray(0, 100)).toEqual(column);
   });
-  expect(await spreadOf(network, tolerances, { draws: 100, seed: 3 })).toEqual(short);
-  expect((await spreadOf(network, tolerances, { draws: 100, seed: 4 })).outputs[0].column).not.toEqual(
+  expect(await spreadOf(made, tolerances, { draws: 100, seed: 3 })).toEqual(short);
+  expect((await spreadOf(made, tolerances, { draws: 100, seed: 4 })).outputs[0].column).not.toEqual(
     short.outputs[0].column,
   );
 });
@@ -135,11 +135,11 @@ test('the interval of the yield covers the true one at least as often as it says
   let covered = 0;
   const seeds = 200;
   for (let seed = 0; seed < seeds; seed++) {
-    const { yield: chance } = await spreadOf(made.network, made.tolerances, { draws: 150, seed });
+    const { yield: chance } = await spreadOf(made, made.tolerances, { draws: 150, seed });
     if (chance !== null && chance.low <= truth && truth <= chance.high) covered++;
   }
   expect(covered / seeds).toBeGreaterThanOrEqual(0.95);
-  const { yield: fine } = await spreadOf(made.network, made.tolerances, { draws: 20_000, seed: 1 });
+  const { yield: fine } = await spreadOf(made, made.tolerances, { draws: 20_000, seed: 1 });
   expect(fine?.share).toBeCloseTo(truth, 3);
 });
 

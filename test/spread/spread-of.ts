@@ -1,9 +1,9 @@
 import { assembleChip } from '../../src/chip/assemble.ts';
 import { layOut } from '../../src/layout/layout.ts';
 import { buildNetwork } from '../../src/network/build.ts';
-import type { Network } from '../../src/network/types.ts';
 import { parseRunSheet } from '../../src/runsheet/parse.ts';
 import type { Tolerances } from '../../src/runsheet/types.ts';
+import type { RunNetwork } from '../../src/solve/flow-network.ts';
 import { prepareModel, type SpreadModel } from '../../src/spread/model.ts';
 import { listOutputs, type Output, pressureNodesOf } from '../../src/spread/outputs.ts';
 import { spreadOf } from '../../src/spread/spread.ts';
@@ -11,19 +11,18 @@ import type { Spread, SpreadOutput } from '../../src/spread/types.ts';
 import { listVariables, type Variables } from '../../src/spread/variables.ts';
 import { readSvg } from '../../src/svg/read.ts';
 
-export interface Varying {
-  readonly network: Network;
+export interface Varying extends RunNetwork {
   readonly tolerances: Tolerances;
 }
 
-/** A drawing (what stands between the svg tags, 1 unit = 1 mm) under a run sheet, as far as its network. */
+/** A drawing (what stands between the svg tags, 1 unit = 1 mm) under a run sheet, as far as its network and its run. */
 export function varying(shapes: string, sheetText: string): Varying {
   const svg = `<svg xmlns="http://www.w3.org/2000/svg" width="60mm" height="40mm" viewBox="0 0 60 40">${shapes}</svg>`;
   const sheet = parseRunSheet(sheetText, 'test.run.yaml');
   if (sheet.tolerances === null) throw new Error('the test sheet has no tolerances');
   const layout = layOut(readSvg(svg, 'test.svg'), 'test.svg');
-  const chip = assembleChip({ layout, sheet, file: 'test.svg', layoutSha256: '0'.repeat(64) });
-  return { network: buildNetwork(chip), tolerances: sheet.tolerances };
+  const { chip, run } = assembleChip({ layout, sheet, file: 'test.svg', layoutSha256: '0'.repeat(64) });
+  return { network: buildNetwork(chip), run, tolerances: sheet.tolerances };
 }
 
 export function spreadOfDrawing(
@@ -31,8 +30,8 @@ export function spreadOfDrawing(
   sheetText: string,
   { draws = 1000, seed = 1 } = {},
 ): Promise<Spread> {
-  const { network, tolerances } = varying(shapes, sheetText);
-  return spreadOf(network, tolerances, { draws, seed });
+  const at = varying(shapes, sheetText);
+  return spreadOf(at, at.tolerances, { draws, seed });
 }
 
 export interface Modelled extends Variables {
@@ -40,10 +39,10 @@ export interface Modelled extends Variables {
   readonly outputs: readonly Output[];
 }
 
-export function modelOf({ network, tolerances }: Varying): Modelled {
-  const variables = listVariables(network.chip, tolerances);
-  const model = prepareModel(network, variables.variables, pressureNodesOf(network));
-  return { ...variables, model, outputs: listOutputs(network, model.nominal) };
+export function modelOf(at: Varying): Modelled {
+  const variables = listVariables(at, at.tolerances);
+  const model = prepareModel(at, variables.variables, pressureNodesOf(at));
+  return { ...variables, model, outputs: listOutputs(at, model.nominal) };
 }
 
 export function outputNamed(spread: Spread, name: string, quantity: SpreadOutput['quantity']): SpreadOutput {

@@ -1,5 +1,5 @@
-import { reachName } from '../../src/network/names.ts';
 import { expect, test } from 'vitest';
+import { reachName } from '../../src/network/names.ts';
 import { ductForm } from '../../src/physics/duct.ts';
 import { acceptedLimits } from '../../src/spread/accepted.ts';
 import { outputValue } from '../../src/spread/outputs.ts';
@@ -100,8 +100,9 @@ tolerances: { temperature: 2 degC }
 });
 
 test('the nominal numbers are those of the check itself', async () => {
-  const { network, tolerances } = varying(TWO_LANES, `${TWO}tolerances: { depth: 5 % }\n`);
-  const { model, outputs } = modelOf({ network, tolerances });
+  const made = varying(TWO_LANES, `${TWO}tolerances: { depth: 5 % }\n`);
+  const { network } = made;
+  const { model, outputs } = modelOf(made);
   for (const output of outputs) {
     if (output.quantity !== 'flow' || output.on !== 'reach') continue;
     const reach = [0, 1].find((r) => reachName(network, r) === output.name) ?? -1;
@@ -188,8 +189,7 @@ tolerances: { pressure: 5 % }
 });
 
 test('limits move out as far as the run sheet accepts, so a chip that is ready is judged by the same limits', async () => {
-  const chip = (accept: string) =>
-    varying(oneDuct(), `${DUCT}${accept}tolerances: { depth: 5 % }\n`).network.chip;
+  const chip = (accept: string) => varying(oneDuct(), `${DUCT}${accept}tolerances: { depth: 5 % }\n`);
   const entry = (rest: string) =>
     `accept: [{ rule: flow-window, at: lane, ${rest}because: "so", by: AM, on: 2026-05-04 }]\n`;
   const low = chip(entry('up_to: 1 nL/min, '));
@@ -216,7 +216,7 @@ channels: { lane: { wall_shear: { max: 2.5 Pa } } }
 tolerances: { depth: { limit: 6 % }, width: 8 um, temperature: 3 degC, flow: 2 %, bore: 1 um }
 `,
   );
-  const { corner, outputs } = await spreadOf(made.network, made.tolerances, { draws: 50, seed: 1 });
+  const { corner, outputs } = await spreadOf(made, made.tolerances, { draws: 50, seed: 1 });
   if (corner === null) throw new Error('no corner');
   expect(outputs[corner.output]).toMatchObject({ name: 'lane', quantity: 'wall_shear_floor_peak' });
   const { model, variables, outputs: listed } = modelOf(made);
@@ -237,7 +237,8 @@ tolerances: { depth: { limit: 6 % }, width: 8 um, temperature: 3 degC, flow: 2 %
 });
 
 test('stopped early it gives the draws made so far, and the first-order numbers even before any', async () => {
-  const { network, tolerances } = varying(oneDuct(), `${DUCT}tolerances: { depth: 5 % }\n`);
+  const made = varying(oneDuct(), `${DUCT}tolerances: { depth: 5 % }\n`);
+  const { tolerances } = made;
   const asked: number[] = [];
   const pace = (stopAt: number) => ({
     due: () => true,
@@ -246,11 +247,11 @@ test('stopped early it gives the draws made so far, and the first-order numbers 
       return done >= stopAt ? ('stop' as const) : ('go on' as const);
     },
   });
-  const part = await spreadOf(network, tolerances, { draws: 1000, seed: 1 }, pace(40));
+  const part = await spreadOf(made, tolerances, { draws: 1000, seed: 1 }, pace(40));
   expect(part).toMatchObject({ asked: 1000, draws: 40 });
-  const whole = await spreadOf(network, tolerances, { draws: 40, seed: 1 });
+  const whole = await spreadOf(made, tolerances, { draws: 40, seed: 1 });
   expect({ ...part, asked: 40 }).toEqual(whole);
-  const none = await spreadOf(network, tolerances, { draws: 1000, seed: 1 }, pace(0));
+  const none = await spreadOf(made, tolerances, { draws: 1000, seed: 1 }, pace(0));
   expect(none).toMatchObject({ draws: 0, yield: null });
   expect(outputNamed(none, 'feed', 'flow').mean).toBeNaN();
   expect(outputNamed(none, 'feed', 'flow').linearSd).toBeGreaterThan(0);

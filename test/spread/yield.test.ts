@@ -17,7 +17,7 @@ describe('everything that is asked is judged in every draw', () => {
     for (let seed = 1; seed <= 60; seed++) {
       const { shapes, sheet } = randomLadder(seed);
       const made = varying(shapes, sheet);
-      const spread = await spreadOf(made.network, made.tolerances, { draws: 24, seed });
+      const spread = await spreadOf(made, made.tolerances, { draws: 24, seed });
       const good = goodDraws(made, 24, seed);
       expect([...spread.isGood], `seed ${seed}\n${sheet}\n${shapes}`).toEqual(good);
       if (good.includes(0) && good.includes(1)) mixed++;
@@ -67,7 +67,7 @@ channels: { lane: { residence_time: { min: 2 s } } }
 tolerances: { pressure: 5 % }
 `;
       const made = varying(shapes, sheet);
-      const spread = await spreadOf(made.network, made.tolerances, { draws: 60, seed: 1 });
+      const spread = await spreadOf(made, made.tolerances, { draws: 60, seed: 1 });
       expect([...spread.isGood], `${waste} Pa`).toEqual(goodDraws(made, 60, 1));
       const fastest = spread.outputs.find(
         ({ on, quantity }) => on === 'channel' && quantity === 'fastest_time',

@@ -1,6 +1,6 @@
-import { reachName } from '../../src/network/names.ts';
 import { type Analysis, analyse } from '../../src/analyse.ts';
 import { layOut } from '../../src/layout/layout.ts';
+import { reachName } from '../../src/network/names.ts';
 import { parseRunSheet } from '../../src/runsheet/parse.ts';
 import { readSvg } from '../../src/svg/read.ts';
 

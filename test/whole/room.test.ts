@@ -21,7 +21,7 @@ test('findings, targets, spread and maps take one residence time, that of the ce
   expect((window?.measured ?? 0) / SECONDS).toBeCloseTo(1, 9);
 
   const wanted = sheet(`targets: [{ channel: lane, residence_time: ${SECONDS} s, by: in }]\n`);
-  const [{ response }] = findSettings(contextOf(SVG, wanted).network).targets;
+  const [{ response }] = findSettings(contextOf(SVG, wanted)).targets;
   expect(response.setting / 1e-10).toBeCloseTo(1, 9);
 
   const inner = SVG.replace(/^<svg[^>]*>|<\/svg>$/g, '');

@@ -35,14 +35,14 @@ describe('tubing of several pieces', () => {
 
   it('holds what its pieces hold together, and takes the time that they take one after the other', async () => {
     const layout = layOut(readSvg(CHIP, 't.svg'), 't.svg');
-    const { chip, network, flow, findings } = await analyse({
+    const { chip, run, network, flow, findings } = await analyse({
       layout,
       sheet: parseRunSheet(sheet(LIST), 't.run.yaml'),
       file: 't.svg',
       layoutSha256: '0'.repeat(64),
     });
     const tool = { name: 'test', version: '0' };
-    const [row, other] = buildResult({ tool, chip, network, flow, findings, layoutFile: 't.svg' }).ports;
+    const [row, other] = buildResult({ tool, chip, run, network, flow, findings, layoutFile: 't.svg' }).ports;
     const volume = (Math.PI / 4) * (0.5e-3 ** 2 * 0.3 + 50e-6 ** 2 * 0.08 + 0.1e-3 ** 2 * 0.05);
     expect(row.tubing_volume_m3! / volume).toBeCloseTo(1, 12);
     expect(row.tubing_time_s! / (volume / row.flow_m3_s!)).toBeCloseTo(1, 12);

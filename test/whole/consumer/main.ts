@@ -22,23 +22,27 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
     file: 'chip.svg',
     layoutSha256: '0'.repeat(64),
   };
-  const chip: Known<rillcheck.Chip> = rillcheck.assembleChip(input);
+  const assembled = rillcheck.assembleChip(input);
+  const chip: Known<rillcheck.Chip> = assembled.chip;
+  const run: Known<rillcheck.Run> = assembled.run;
   const channels: readonly Known<rillcheck.Channel>[] = chip.channels;
   const ports: readonly Known<rillcheck.Port>[] = chip.ports;
-  const conditions: readonly Known<rillcheck.PortCondition>[] = ports.map(({ condition }) => condition);
+  const portRuns: readonly Known<rillcheck.PortRun>[] = run.ports;
+  const conditions: readonly Known<rillcheck.PortCondition>[] = portRuns.map(({ condition }) => condition);
   const layers: readonly Known<rillcheck.ChipLayer>[] = chip.layers;
   const edge: Known<rillcheck.ChipEdge> | null = chip.edge;
-  const limits: Known<rillcheck.ChipLimits> = chip.limits;
-  const fluid: Known<rillcheck.Fluid> = chip.fluid;
+  const limits: Known<rillcheck.Limits> = run.limits;
+  const fluid: Known<rillcheck.Fluid> = run.fluid;
+  const mixture: Known<rillcheck.Mixture> = fluid.mixture;
   const faults: readonly Known<rillcheck.ReadingFault>[] = chip.faults;
 
   const network: Known<rillcheck.Network> = rillcheck.buildNetwork(chip);
   const kinds: readonly Known<rillcheck.NodeKind>[] = rillcheck.NODE_KINDS;
   const round: readonly number[] = network.trace.near.index?.search(0, 0, 1, 1) ?? [];
-  const flow: Known<rillcheck.FlowState> = rillcheck.solveFlow(network);
+  const flow: Known<rillcheck.FlowState> = rillcheck.solveFlow(network, run);
   const parts: readonly Known<rillcheck.FlowPart>[] = flow.parts;
 
-  const context: Known<rillcheck.FindingContext> = { chip, network, flow };
+  const context: Known<rillcheck.FindingContext> = { chip, run, network, flow };
   const rule: Known<rillcheck.Rule> = {
     names: ['my-own'],
     run: ({ chip: { file } }) => ({ findings: [], notRun: [{ rule: 'my-own', why: file }] }),
@@ -54,7 +58,7 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
   };
   const analysis: Known<rillcheck.Analysis> = await rillcheck.analyse(input, onStage);
   const shares: Known<rillcheck.JointShares> = analysis.jointShares;
-  const settings: Known<rillcheck.FoundSettings> = rillcheck.findSettings(network);
+  const settings: Known<rillcheck.FoundSettings> = rillcheck.findSettings({ network, run });
   const targets: readonly Known<rillcheck.FoundTarget>[] = settings.targets;
   const pumped: Known<rillcheck.Analysis> = (await rillcheck.analysePump(input)).analysis;
 
@@ -62,7 +66,7 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
   if (tolerances === null) throw new Error('the run sheet of this example has tolerances');
   const draws: Known<rillcheck.SpreadOptions> = { draws: 16, seed: 1 };
   const pace: Known<rillcheck.Pace> = { due: () => false, rest: async () => 'go on' };
-  const spread: Known<rillcheck.Spread> = await rillcheck.spreadOf(network, tolerances, draws, pace);
+  const spread: Known<rillcheck.Spread> = await rillcheck.spreadOf({ network, run }, tolerances, draws, pace);
 
   const result: Known<rillcheck.ResultInput> = {
     ...analysis,
@@ -95,7 +99,7 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
   const duct: Known<rillcheck.SectionState> = rillcheck.computeSection(section);
   const form: Known<rillcheck.DuctForm> = rillcheck.ductForm(5e-4, 5e-5);
 
-  void [edge, limits, fluid, faults, conditions, layers, kinds, round, parts, own, severities];
+  void [edge, limits, fluid, mixture, faults, ports, conditions, layers, kinds, round, parts, own, severities];
   void [shares, targets, pumped, items, form, duct];
   const texts = [draft, json, reaches, segments, rillcheck.svgPicture(one, picture)];
   return [
