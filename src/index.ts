@@ -20,6 +20,7 @@ export type {
   ReadingFault,
   Run,
 } from './chip/types.ts';
+export { type PdfFileOptions, writePdf } from './commands/pdf.ts';
 export { type DraftInput, draftRunSheet } from './draft/draft.ts';
 export { InputError } from './errors.ts';
 export { findAll } from './findings/check.ts';

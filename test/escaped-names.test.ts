@@ -64,7 +64,6 @@ describe('a name that an editor has escaped', () => {
       layout: layOut(readSvg(drawing, 'c.svg'), 'c.svg'),
       sheet: parseRunSheet(sheet, 'c.run.yaml'),
       file: 'c.svg',
-      layoutSha256: '0'.repeat(64),
     });
   const chip = (sheet: string, drawing = svg()): Chip => assembled(sheet, drawing).chip;
   const SHEET = (lane: string, layer: string, feed: string, waste: string): string => `

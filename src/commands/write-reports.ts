@@ -6,6 +6,7 @@ import type { Report } from '../report/report.ts';
 import { writeSpreadCsv } from '../report/spread-csv.ts';
 import type { Io } from './io.ts';
 import type { Format, LayoutOptions } from './options.ts';
+import { writePdf } from './pdf.ts';
 import type { Progress } from './progress.ts';
 import { type InputFile, resolveIn } from './read-files.ts';
 import { refuseOverwriting } from './refuse-overwriting.ts';
@@ -103,13 +104,7 @@ function filesOf({ report, names, options }: ReportPlan, format: Format, io: Io)
       return [
         {
           name: names.whole('pdf'),
-          content: async () => {
-            const [{ writePdf }, { readFonts }] = await Promise.all([
-              import('../report/pdf/document.ts'),
-              import('./fonts.ts'),
-            ]);
-            return writePdf(report, { fonts: await readFonts(), paper: options.paper, date: io.now });
-          },
+          content: () => writePdf(report, { paper: options.paper, date: io.now }),
         },
       ];
     default:

@@ -1,13 +1,13 @@
 import { assembleChip } from '../chip/assemble.ts';
 import { DEFAULT_MAX_REYNOLDS } from '../chip/defaults.ts';
 import { sizesByPixel } from '../chip/pixel-sizes.ts';
-import type { Channel, Chip } from '../chip/types.ts';
+import type { Channel, Chip, Port } from '../chip/types.ts';
 import type { Layout } from '../layout/types.ts';
 import { isPattern, layerKey } from '../runsheet/names.ts';
 import { formatMm } from '../runsheet/shown.ts';
 import { utf8Length } from '../utf8-length.ts';
 import { type PillarField, pillarFields } from './pillars.ts';
-import { NO_LAYER, proposePlanes } from './planes.ts';
+import { type LayerPair, NO_LAYER, proposePlanes } from './planes.ts';
 import { commentText, isDraftable, keyText } from './yaml-text.ts';
 
 export interface DraftInput {
@@ -28,26 +28,31 @@ const MOST_BYTES = 900_000;
  */
 export function draftRunSheet({ layout, file, tool }: DraftInput): string {
   const { chip } = assembleChip({ layout, sheet: null, file });
-  const groupsOf = groupsByOrdinal(layout);
   const fields = pillarFields(chip);
-  const layers = layerLines(chip, groupsOf);
-  const whole = [
-    ...head(chip, layout, tool, groupsOf, fields),
-    ...layers,
-    ...portLines(chip, groupsOf, fields),
-    ...channelLines(chip, groupsOf),
-    ...rest(chip, fields),
-  ].join('\n');
+  const pillars = new Set(fields.flatMap((field) => field.pillars));
+  const ports = chip.ports.filter((port) => !pillars.has(port));
+  const drawn: Drawn = { chip, groupsOf: groupsByOrdinal(layout), fields, pillars, ports };
+  const before = [...head(drawn, layout, tool), ...layerLines(drawn), ...portLines(drawn)];
+  const after = rest(drawn);
+  const whole = [...before, ...channelLines(drawn), ...after].join('\n');
   if (utf8Length(whole) <= MOST_BYTES) return `${whole}\n`;
   const short = [
-    ...head(chip, layout, tool, groupsOf, fields),
-    ...layers,
-    ...portLines(chip, groupsOf, fields),
+    ...before,
     'channels: # the drawing has too many to list here; give windows to those that need them, * matches any run of characters',
     ...WINDOW_EXAMPLE,
-    ...rest(chip, fields),
+    ...after,
   ].join('\n');
   return `${short}\n`;
+}
+
+/** What was drawn, with circles that look like pillars apart from ports. */
+interface Drawn {
+  readonly chip: Chip;
+  readonly groupsOf: GroupsOf;
+  readonly fields: readonly PillarField[];
+  /** All pillars of the fields. */
+  readonly pillars: ReadonlySet<Port>;
+  readonly ports: readonly Port[];
 }
 
 /** Named groups round the drawn thing of that ordinal, outermost first. */
@@ -59,13 +64,8 @@ function groupsByOrdinal({ items }: Layout): GroupsOf {
   return (ordinal) => byOrdinal.get(ordinal) ?? [];
 }
 
-function head(
-  chip: Chip,
-  layout: Layout,
-  tool: string,
-  groupsOf: GroupsOf,
-  fields: readonly PillarField[],
-): string[] {
+function head(drawn: Drawn, layout: Layout, tool: string): string[] {
+  const { chip } = drawn;
   const { edge } = chip;
   const unit = layout.unitStated
     ? `# unit: 1 mm # size of one unit of the drawing; not needed, the drawing says it (${commentText(layout.unitReason)})`
@@ -90,7 +90,7 @@ function head(
     edge === null
       ? 'outline: # fill in: name of the shape that is the chip edge; without one the edge rules are not run'
       : `# outline: ${edgeName(edge.name)} # the chip edge found; when given here, only what lies inside it is read`,
-    ...portsLayerLine(chip, groupsOf, fields),
+    portsLayerLine(drawn),
     '# ignore: ["dim-*"] # names of elements or layers that are not read; * matches any run of characters',
     '# join_within: 1 um # slack of every "on" and "inside" when channels are joined',
     '# joints: resolved # corners and junctions add resistance of their own; or centreline: they do not',
@@ -106,27 +106,21 @@ function edgeName(name: string): string {
   return isDraftable(name) ? keyText(name) : '…';
 }
 
-function portsLayerLine(chip: Chip, groupsOf: GroupsOf, fields: readonly PillarField[]): string[] {
-  const pillars = new Set(fields.flatMap((field) => field.pillars));
-  const names = new Set<string>();
-  for (const port of chip.ports) {
-    if (!pillars.has(port)) names.add(groupsOf(port.ordinal).at(-1) ?? '');
-  }
+function portsLayerLine({ groupsOf, fields, pillars, ports }: Drawn): string {
+  const names = new Set(ports.map(({ ordinal }) => groupsOf(ordinal).at(-1) ?? ''));
   const [only] = names;
   if (names.size !== 1 || only === undefined || only === '' || !isDraftable(only)) {
-    return ['# ports_layer: holes # only circles of this layer are ports'];
+    return '# ports_layer: holes # only circles of this layer are ports';
   }
   const isApart = [...pillars].every(({ ordinal }) =>
     groupsOf(ordinal).every((group) => layerKey(group) !== layerKey(only)),
   );
   if (pillars.size > 0 && isApart) {
     const where = fields.map(({ channel }) => commentText(channel.name)).join(', ');
-    return [
-      `ports_layer: ${keyText(only)} # only circles of this layer are ports; assumed, for the ${pillars.size} circles within ${where} look like pillars`,
-    ];
+    return `ports_layer: ${keyText(only)} # only circles of this layer are ports; assumed, for the ${pillars.size} circles within ${where} look like pillars`;
   }
   const all = pillars.size > 0 ? 'all that look like ports' : 'all that were found';
-  return [`# ports_layer: ${keyText(only)} # only circles of this layer are ports; ${all} lie in it`];
+  return `# ports_layer: ${keyText(only)} # only circles of this layer are ports; ${all} lie in it`;
 }
 
 /** A layer as drawn: the outermost named group round its channels. */
@@ -138,7 +132,7 @@ interface DrawnLayer {
   withDepth: number;
 }
 
-function layerLines(chip: Chip, groupsOf: GroupsOf): string[] {
+function layerLines({ chip, groupsOf }: Drawn): string[] {
   const layers = new Map<string, DrawnLayer>();
   let loose = 0;
   for (const { ordinal, depthOrigin } of chip.channels) {
@@ -169,10 +163,14 @@ function layerLines(chip: Chip, groupsOf: GroupsOf): string[] {
   return [
     `depth: # fill in: etch depth of every layer that is given none below, for example 50 um${needed}`,
     'layers: # depth of each layer; also profile: isotropic (wet-etched), plane: top, or the word ignore for a layer that is not read',
-    ...planes.assumptions(nameOf).map((text) => `  # ${text}`),
+    ...planes.passing.map((pair) => `  # ${passingText(pair, nameOf)}`),
     ...[...layers.values()].map((layer, i) => layerLine(layer, planes.of.get(i) ?? null)),
     '',
   ];
+}
+
+function passingText({ a, b, count }: LayerPair, nameOf: (layer: number) => string): string {
+  return `assumed: ${nameOf(a)} and ${nameOf(b)} cross in ${counted(count, 'place')} where neither ends, so they are taken to pass over each other; if they are meant to join there, take plane: out`;
 }
 
 const MOST_INNER = 8;
@@ -192,9 +190,7 @@ function layerLine({ name, inner, channels, withDepth }: DrawnLayer, plane: stri
     : `  ${keyText(name)}: { plane: ${plane} } # plane assumed; fill in: { depth: 50 um, plane: ${plane} }; ${about}`;
 }
 
-function portLines(chip: Chip, groupsOf: GroupsOf, fields: readonly PillarField[]): string[] {
-  const pillars = new Set(fields.flatMap((field) => field.pillars));
-  const ports = chip.ports.filter((port) => !pillars.has(port));
+function portLines({ groupsOf, fields, ports }: Drawn): string[] {
   const lines = ports.map(({ name, drawnName, xMm, yMm, radiusMm }) => {
     const place = `${formatMm(2 * radiusMm)} mm hole at (${formatMm(xMm)}, ${formatMm(yMm)}) mm`;
     if (drawnName === null)
@@ -216,7 +212,7 @@ function pillarLine({ channel, pillars }: PillarField, groupsOf: GroupsOf): stri
   const sizes = [...new Set(pillars.map(({ radiusMm }) => formatMm(2 * radiusMm)))];
   const layers = [...new Set(pillars.flatMap(({ ordinal }) => groupsOf(ordinal).at(-1) ?? []))];
   const inLayers = layers.length === 0 ? '' : ` (in ${layers.slice(0, 4).map(commentText).join(', ')})`;
-  const named = pillars.flatMap(({ drawnName }) => drawnName ?? []);
+  const named = drawnNames(pillars);
   const names =
     named.length === 0
       ? ''
@@ -229,7 +225,7 @@ const WINDOW_EXAMPLE = [
   '#  "branch-*": { even: 5 % } # the flows of all channels of this name within ±5 % of their mean',
 ];
 
-function channelLines(chip: Chip, groupsOf: GroupsOf): string[] {
+function channelLines({ chip, groupsOf }: Drawn): string[] {
   const named = new Map<string, Channel[]>();
   let unnamed = 0;
   for (const channel of chip.channels) {
@@ -262,17 +258,10 @@ function channelLines(chip: Chip, groupsOf: GroupsOf): string[] {
   ];
 }
 
-function rest(chip: Chip, fields: readonly PillarField[]): string[] {
-  const pillars = new Set(fields.flatMap((field) => field.pillars));
-  const names = chip.ports
-    .filter((port) => !pillars.has(port))
-    .flatMap(({ drawnName }) => drawnName ?? [])
-    .filter(isDraftable);
-  const by = names[0] === undefined ? 'feed' : keyText(names[0]);
-  const channel = chip.channels
-    .flatMap(({ drawnName }) => drawnName ?? [])
-    .find((name) => isDraftable(name) && !isPattern(name));
-  const on = channel === undefined ? 'lane-1' : keyText(channel);
+function rest({ chip, ports }: Drawn): string[] {
+  const by = keyText(drawnNames(ports).find(isDraftable) ?? 'feed');
+  const channel = drawnNames(chip.channels).find((name) => isDraftable(name) && !isPattern(name));
+  const on = keyText(channel ?? 'lane-1');
   return [
     'targets: # what the command pump must reach, each by the setting of one port',
     `#  - { channel: ${on}, wall_shear: 0.3 Pa, at: mean, by: ${by} }`,
@@ -307,6 +296,10 @@ function rest(chip: Chip, fields: readonly PillarField[]): string[] {
     'accept: # findings that someone has looked at and takes on',
     '#  - { rule: thin-wall, at: lane-1, up_to: 35 um, because: "measured on the last batch", by: AM, on: 2026-05-04 }',
   ];
+}
+
+function drawnNames(things: readonly (Port | Channel)[]): string[] {
+  return things.flatMap(({ drawnName }) => drawnName ?? []);
 }
 
 function counted(count: number, noun: string): string {

@@ -6,11 +6,18 @@ import { layerCrossings } from '../network/layer-crossings.ts';
 /** Layer of a stroke that lies in none. */
 export const NO_LAYER = -1;
 
-export interface ProposedPlanes {
+interface ProposedPlanes {
   /** Plane of each layer that is to lie in another than the chip's own. */
   readonly of: ReadonlyMap<number, string>;
-  /** What the proposal assumes, a line for each pair of layers that cross. */
-  readonly assumptions: (nameOf: (layer: number) => string) => readonly string[];
+  /** Layers that are so taken to pass over each other. */
+  readonly passing: readonly LayerPair[];
+}
+
+/** Two layers, and in how many places they cross where neither ends. */
+export interface LayerPair {
+  readonly a: number;
+  readonly b: number;
+  count: number;
 }
 
 /**
@@ -26,7 +33,7 @@ export function proposePlanes(
   mayMove: (layer: number) => boolean,
 ): ProposedPlanes {
   const layers = [...new Set(chip.channels.map((_, channel) => layerOf(channel)))].sort((a, b) => a - b);
-  const counts = layers.length < 2 ? new Map<string, PairCount>() : countPairs(chip, layerOf);
+  const counts = layers.length < 2 ? new Map<string, LayerPair>() : countPairs(chip, layerOf);
   const levels = new Map<number, number>();
   for (const layer of layers) if (!mayMove(layer)) levels.set(layer, 0);
   for (const layer of layers) {
@@ -42,27 +49,12 @@ export function proposePlanes(
   }
   const of = new Map<number, string>();
   for (const [layer, level] of levels) if (level > 0) of.set(layer, level === 1 ? 'top' : `top-${level}`);
-  return {
-    of,
-    assumptions: (nameOf) =>
-      [...counts.values()]
-        .filter(({ a, b }) => levels.get(a) !== levels.get(b))
-        .map(
-          ({ a, b, count }) =>
-            `assumed: ${nameOf(a)} and ${nameOf(b)} cross in ${count} ${count === 1 ? 'place' : 'places'} where neither ends, so they are taken to pass over each other; if they are meant to join there, take plane: out`,
-        ),
-  };
+  return { of, passing: [...counts.values()].filter(({ a, b }) => levels.get(a) !== levels.get(b)) };
 }
 
-interface PairCount {
-  readonly a: number;
-  readonly b: number;
-  count: number;
-}
-
-function countPairs(chip: Chip, layerOf: (channel: number) => number): Map<string, PairCount> {
+function countPairs(chip: Chip, layerOf: (channel: number) => number): Map<string, LayerPair> {
   const near = findNearPairs(toPieces(chip.channels), chip.joinWithinMm, () => 1, chip.file);
-  const counts = new Map<string, PairCount>();
+  const counts = new Map<string, LayerPair>();
   for (const { a, b } of layerCrossings(near, chip.ports, chip.joinWithinMm, layerOf)) {
     const known = counts.get(`${a} ${b}`);
     if (known === undefined) counts.set(`${a} ${b}`, { a, b, count: 1 });

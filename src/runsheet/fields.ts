@@ -3,20 +3,21 @@
  * messages that say what was written and what would have been right. The key and line are added by parse.ts.
  */
 import * as v from 'valibot';
+import { withoutEscapes } from '../escaped-names.ts';
+import { recordOf } from './names.ts';
 import { nearest } from './nearest.ts';
-import { quote } from './quote.ts';
-import type { Tolerance } from './types.ts';
+import { hint, quote } from './quote.ts';
 import { describeQuantity, parseQuantity, type Quantity, QuantityError } from './units.ts';
 
 /** A schema that reads anything and hands on `T`. */
 export type Field<T> = v.GenericSchema<unknown, T>;
 
-export type Bound = 'above 0' | 'not below 0' | 'any';
+type Bound = 'above 0' | 'not below 0' | 'any';
 
-export interface QuantityOptions {
+interface QuantityOptions {
   readonly bound: Bound;
   /** What it is called in messages, with its article: "a depth". */
-  readonly noun?: string;
+  readonly noun?: string | undefined;
   /** A right example, number and unit: "300 mm". */
   readonly example?: string;
   readonly description: string;
@@ -29,7 +30,7 @@ export function quantity(
 ): Field<number> {
   const usual = describeQuantity(kind);
   const shown = example ?? usual.example;
-  const exampleUnit = shown.replace(/^[^ ]* ?/, '');
+  const exampleUnit = unitOf(shown);
   return scalar(
     shown,
     { description, examples: [shown], ...(usual.isBare ? { type: ['string', 'number'] } : {}) },
@@ -41,15 +42,26 @@ export function quantity(
   );
 }
 
-/** A text that must not be empty: a name, a title. Editors may read `007` as a number, so the JSON Schema allows one. */
+/** A text that must not be empty: a title. Editors may read `007` as a number, so the JSON Schema allows one. */
 export function text(description: string, example: string): Field<string> {
-  return scalar(example, { description, examples: [example], type: ['string', 'number'] }, (written) => {
-    if (written.trim() === '') throw new QuantityError(`is empty; ${hint(example)}`);
-    if (written.length > MAX_TEXT) {
-      throw new QuantityError(`has ${written.length} characters, over ${MAX_TEXT} (the limit); shorten it`);
-    }
-    return written;
-  });
+  return scalar(example, { description, examples: [example], type: ['string', 'number'] }, (written) =>
+    checkedText(written, example),
+  );
+}
+
+/** A name of the drawing, or a pattern of such names: an editor's escapes are read in it. */
+export function drawnName(description: string, example: string): Field<string> {
+  return scalar(example, { description, examples: [example], type: ['string', 'number'] }, (written) =>
+    checkedText(withoutEscapes(written), example),
+  );
+}
+
+function checkedText(written: string, example: string): string {
+  if (written.trim() === '') throw new QuantityError(`is empty; ${hint(example)}`);
+  if (written.length > MAX_TEXT) {
+    throw new QuantityError(`has ${written.length} characters, over ${MAX_TEXT} (the limit); shorten it`);
+  }
+  return written;
 }
 
 /** Longest text in characters: it is printed on paper. */
@@ -57,7 +69,7 @@ const MAX_TEXT = 1000;
 
 /** One word of a list. */
 export function word<const T extends string>(options: readonly T[], description: string): Field<T> {
-  return scalar(options[0]!, { description, enum: options }, (written) => {
+  return scalar(options[0], { description, enum: options }, (written) => {
     const found = options.find((option) => option === written.trim());
     if (found !== undefined) return found;
     const near = nearest(written, options);
@@ -72,43 +84,76 @@ export function scalar<T>(
   metadata: Readonly<Record<string, unknown>>,
   read: (text: string) => T,
 ): Field<T> {
-  const schema = v.pipe(
-    v.string(),
-    v.metadata({ ...metadata }),
-    v.rawTransform<string, T>(({ dataset, addIssue, NEVER }) => {
-      try {
-        return read(dataset.value);
-      } catch (error) {
-        if (!(error instanceof QuantityError)) throw error;
-        addIssue({ message: error.message });
-        return NEVER;
-      }
-    }),
-  );
-  return byShape({ text: schema }, hint(example));
+  return byShape({ text: v.pipe(v.string(), v.metadata({ ...metadata }), reading(read)) }, hint(example));
 }
 
-/** Named keys, all known here; any other is an error that names the nearest. */
-export function keys<const E extends v.ObjectEntries>(
-  entries: E,
+/** A key of a map that must be there, has a value for when it is missing, or a name of its own. */
+export interface Key<T, Name extends string | null> {
+  readonly field: Field<unknown>;
+  /** What the value is called once it is read; null: as it is written. */
+  readonly name: Name;
+  /** Stands for a key that is missing. */
+  readonly otherwise: T | null;
+}
+
+export function required<T>(field: Field<T>): Key<T, null> {
+  return { field, name: null, otherwise: null };
+}
+
+export function withDefault<T>(field: Field<T>, otherwise: T): Key<T, null> {
+  return { field: v.optional(field), name: null, otherwise };
+}
+
+/** A key whose value has another name once it is read, with its unit: `min_width` is `minWidthM`. */
+export function called<const Name extends string, T>(name: Name, key: Key<T, null>): Key<T, Name>;
+export function called<const Name extends string, T>(name: Name, key: Field<T>): Key<T | null, Name>;
+export function called<const Name extends string, T>(
+  name: Name,
+  key: Key<T, null> | Field<T>,
+): Key<T | null, Name> {
+  return { ...toKey(key), name };
+}
+
+function toKey<T>(key: Key<T, string | null> | Field<T>): Key<T | null, string | null> {
+  return 'field' in key ? key : withDefault<T | null>(key, null);
+}
+
+/** What a map of keys hands on. */
+type ValuesOf<Keys> = {
+  readonly [K in keyof Keys as Keys[K] extends Key<unknown, infer Name extends string>
+    ? Name
+    : K]: Keys[K] extends Key<infer T, string | null> ? T : Keys[K] extends Field<infer T> ? T | null : never;
+};
+
+/** Named keys, all known here; any other is an error that names the nearest. A key that is a field alone may be missing: null then. */
+export function keys<Keys extends Readonly<Record<string, Field<unknown> | Key<unknown, string | null>>>>(
+  given: Keys,
   example: string,
-): Field<v.InferOutput<v.StrictObjectSchema<E, undefined>>> {
-  const known = Object.keys(entries);
-  const schema = v.strictObject(entries, (issue) => {
+): Field<ValuesOf<Keys>> {
+  const known = Object.entries(given).map(([key, one]) => ({ key, ...toKey(one) }));
+  const schema = v.strictObject(Object.fromEntries(known.map(({ key, field }) => [key, field])), (issue) => {
     const key = issue.path?.at(-1)?.key;
     if (issue.expected !== 'never')
       return `needs the key ${issue.expected.replaceAll('"', '')}; ${hint(example)}`;
-    const near = nearest(String(key), known);
+    const names = Object.keys(given);
+    const near = nearest(String(key), names);
     if (near !== null) return `unknown key; did you mean ${quote(near)}?`;
-    return `unknown key; known here: ${known.join(', ')}`;
+    return `unknown key; known here: ${names.join(', ')}`;
   });
-  // The output does not depend on whether messages are given, which is all that the two types differ in.
-  return byShape({ map: schema as Field<v.InferOutput<v.StrictObjectSchema<E, undefined>>> }, hint(example));
+  const values = reading<Readonly<Record<string, unknown>>, ValuesOf<Keys>>(
+    (read) =>
+      // Each value is what its field hands on, under the name that its key gives it: ValuesOf says the same of the types.
+      Object.fromEntries(
+        known.map(({ key, name, otherwise }) => [name ?? key, read[key] ?? otherwise]),
+      ) as ValuesOf<Keys>,
+  );
+  return byShape({ map: v.pipe(schema, values) }, hint(example));
 }
 
-/** Keys that are names of the drawing. */
+/** Keys that are names: a record without a prototype. */
 export function named<T>(value: Field<T>, example: string): Field<Readonly<Record<string, T>>> {
-  return byShape({ map: v.record(v.string(), value) }, hint(example));
+  const values = reading((given: Readonly<Record<string, T>>) => recordOf(Object.entries(given)));
+  return byShape({ map: v.pipe(v.record(v.string(), value), values) }, hint(example));
 }
 
 export function list<T>(item: Field<T>, example: string): Field<readonly T[]> {
@@ -121,75 +166,66 @@ export function pair(
   ordered: boolean,
   example: string,
 ): Field<readonly [number, number]> {
-  return byShape(
-    {
-      list: v.pipe(
-        v.array(item),
-        v.length(2, (issue) => `has ${issue.input.length} values and needs 2; ${hint(example)}`),
-        v.rawTransform<number[], readonly [number, number]>(({ dataset: { value }, addIssue, NEVER }) => {
-          const [first, second] = [value[0]!, value[1]!];
-          if (ordered && second < first) {
-            addIssue({ message: `has the larger value first; ${hint(example)}` });
-            return NEVER;
-          }
-          return [first, second];
-        }),
-      ),
-    },
-    hint(example),
+  const two = v.pipe(
+    v.array(item),
+    v.length(2, (issue) => `has ${issue.input.length} values and needs 2; ${hint(example)}`),
+    reading(([first, second]: number[]): readonly [number, number] => {
+      if (ordered && second < first) throw new Complaint(`has the larger value first; ${hint(example)}`);
+      return [first, second];
+    }),
   );
+  return byShape({ list: two }, hint(example));
 }
 
-type Shape = 'text' | 'list' | 'map';
+/** What may stand at a place in the sheet, by its shape. */
+interface Shapes<Text, List, Map> {
+  readonly text?: Field<Text>;
+  readonly list?: Field<List>;
+  readonly map?: Field<Map>;
+}
 
 /** One schema for each shape that may stand here; any other shape is an error. */
-export function byShape<T>(options: Readonly<Partial<Record<Shape, Field<T>>>>, wanted: string): Field<T> {
-  const all = Object.values(options);
+export function byShape<Text = never, List = never, Map = never>(
+  options: Shapes<Text, List, Map>,
+  wanted: string,
+): Field<Text | List | Map> {
+  const all: Field<Text | List | Map>[] = Object.values(options);
   // Asked without input (for the JSON Schema), it is the union of its options.
-  const any = all.length === 1 ? all[0]! : v.union(all);
-  return v.lazy((input: unknown): Field<T> => {
+  const any = all.length === 1 ? all[0] : v.union(all);
+  return v.lazy((input: unknown): Field<Text | List | Map> => {
     if (input === undefined) return any;
     const shape = shapeOf(input);
     return options[shape] ?? v.never(`is ${SHAPES[shape]}; ${wanted}`);
   });
 }
 
-/** A check over several keys of a map or entries of a list; it may point at one of them. */
-export function checked<T>(field: Field<T>, check: (value: T) => Complaint | null): Field<T> {
-  return v.pipe(
-    field,
-    v.rawCheck<T>(({ dataset, addIssue }) => {
-      if (!dataset.typed) return;
-      const complaint = check(dataset.value);
-      if (complaint !== null) addIssue(issueOf(complaint, dataset.value));
-    }),
-  );
+/** What is wrong with a map as a whole, or with one of its keys. */
+export class Complaint extends QuantityError {
+  readonly key: string | null;
+
+  constructor(message: string, key: string | null = null) {
+    super(message);
+    this.key = key;
+  }
 }
 
-export interface Complaint {
-  readonly message: string;
-  readonly key?: string;
+/** Turns one checked form into another, or checks several keys of it: `change` throws a Complaint. */
+export function changed<A, B>(field: Field<A>, change: (value: A) => B): Field<B> {
+  return v.pipe(field, reading(change));
 }
 
 export function described<T>(field: Field<T>, description: string): Field<T> {
-  return v.pipe(field, v.description(description));
+  // The JSON Schema gets no description that stands after a transformation, so the field is kept apart.
+  return v.pipe(
+    v.lazy(() => field),
+    v.description(description),
+  );
 }
 
-/** Turns one checked form into another; a complaint thrown by `change` becomes an issue. */
-export function changed<A, B>(
-  field: Field<A>,
-  change: (value: A) => B | Complaint,
-  isComplaint: (value: B | Complaint) => value is Complaint,
-): Field<B> {
-  return v.pipe(
-    field,
-    v.rawTransform<A, B>(({ dataset, addIssue, NEVER }) => {
-      const result = change(dataset.value);
-      if (!isComplaint(result)) return result;
-      addIssue(issueOf(result, dataset.value));
-      return NEVER;
-    }),
-  );
+export interface Tolerance {
+  readonly kind: 'relative' | 'absolute';
+  readonly value: number;
+  readonly distribution: 'normal' | 'uniform';
 }
 
 /** Tolerance as a percentage or an absolute value, 2 sigma of a normal; `{ limit: … }` is a uniform hard limit. */
@@ -199,60 +235,50 @@ export function tolerance(
   example: string,
 ): Field<Tolerance> {
   const value = toleranceValue(kind, share, example);
-  const limit = keys({ limit: value }, `{ limit: ${example} }`);
-  return byShape<Tolerance>(
-    {
-      text: value,
-      map: v.pipe(
-        limit,
-        v.transform((given): Tolerance => ({ ...given.limit, distribution: 'uniform' })),
-      ),
-    },
-    hint(example),
+  const limit = changed(
+    keys({ limit: required(value) }, `{ limit: ${example} }`),
+    (given): Tolerance => ({ ...given.limit, distribution: 'uniform' }),
   );
+  return byShape({ text: value, map: limit }, hint(example));
 }
 
 /** A tolerance for all, or one for each name with `default` for the rest. */
-export function toleranceByName(
-  kind: Quantity,
-  example: string,
-): Field<{ readonly all: Tolerance | null; readonly byName: Readonly<Record<string, Tolerance>> }> {
+interface ToleranceByName {
+  readonly all: Tolerance | null;
+  readonly byName: Readonly<Record<string, Tolerance>>;
+}
+
+export function toleranceByName(kind: Quantity, example: string): Key<ToleranceByName, null> {
   const one = tolerance(kind, 'with share', example);
-  const many = named(one, `{ lanes: ${example} }`);
-  const all = v.pipe(
-    one,
-    v.transform((value) => ({ all: value, byName: noNames })),
-  );
-  const each = v.pipe(
-    many,
-    v.transform((given) => {
-      const byName: Record<string, Tolerance> = Object.create(null);
-      for (const [name, value] of Object.entries(given)) if (name !== 'default') byName[name] = value;
-      return { all: given.default ?? null, byName };
+  const all = changed(one, (value): ToleranceByName => ({ all: value, byName: recordOf([]) }));
+  const each = changed(
+    named(one, `{ lanes: ${example} }`),
+    (given): ToleranceByName => ({
+      all: given.default ?? null,
+      byName: recordOf(Object.entries(given).filter(([name]) => name !== 'default')),
     }),
   );
-  type Both = { readonly all: Tolerance | null; readonly byName: Readonly<Record<string, Tolerance>> };
-  return v.lazy((input: unknown): Field<Both> => {
+  const either = v.lazy((input: unknown) => {
     if (input === undefined) return v.union([all, each]);
     return shapeOf(input) !== 'map' || Object.keys(Object(input)).join() === 'limit' ? all : each;
   });
+  return withDefault(either, { all: null, byName: recordOf([]) });
 }
 
-export function hint(example: string): string {
-  return `write for example ${example.startsWith('{') || example.startsWith('[') ? example : `"${example}"`}`;
-}
-
-const noNames: Readonly<Record<string, Tolerance>> = Object.freeze(Object.create(null));
-
-const SHAPES: Readonly<Record<Shape, string>> = {
+const SHAPES = {
   text: 'one text',
   list: 'a list',
   map: 'a map of keys and values',
 };
 
-function shapeOf(input: unknown): Shape {
+function shapeOf(input: unknown): keyof typeof SHAPES {
   if (typeof input === 'string') return 'text';
   return Array.isArray(input) ? 'list' : 'map';
+}
+
+/** "um" of "50 um", nothing of "10". */
+function unitOf(example: string): string {
+  return example.replace(/^[^ ]* ?/, '');
 }
 
 function checkBound(text: string, value: number, bound: Bound, noun: string, example: string): void {
@@ -273,11 +299,7 @@ function toleranceValue(
         `${quote(written)} is a percentage; ${describeQuantity(kind).word} is needed; ${hint(example)}`,
       );
     }
-    const value = parseQuantity(
-      written,
-      relative ? 'share' : kind,
-      relative ? '%' : example.replace(/^[^ ]* ?/, ''),
-    );
+    const value = parseQuantity(written, relative ? 'share' : kind, relative ? '%' : unitOf(example));
     checkBound(written, value, 'not below 0', 'a tolerance', example);
     if (relative && value >= 1)
       throw new QuantityError(`${quote(written)} is not below 100 %; ${hint(example)}`);
@@ -288,15 +310,22 @@ function toleranceValue(
 const TOLERANCE =
   'A percentage or a value with unit: 2 sigma of a normal distribution. { limit: … } is a uniform hard limit.';
 
-function issueOf<T>(complaint: Complaint, value: T): { message: string; path?: [v.IssuePathItem] } {
-  if (complaint.key === undefined) return { message: complaint.message };
+/** A step of a schema that makes something else of what is read; `read` throws QuantityError. */
+function reading<A, B>(read: (value: A) => B): v.RawTransformAction<A, B> {
+  return v.rawTransform(({ dataset, addIssue, NEVER }) => {
+    try {
+      return read(dataset.value);
+    } catch (error) {
+      if (!(error instanceof QuantityError)) throw error;
+      addIssue({ message: error.message, ...pathTo(error, dataset.value) });
+      return NEVER;
+    }
+  });
+}
+
+function pathTo(error: QuantityError, value: unknown): { readonly path?: [v.IssuePathItem] } {
+  if (!(error instanceof Complaint) || error.key === null) return {};
+  const { key } = error;
   const input: Record<string, unknown> = Object(value);
-  const item = {
-    type: 'object',
-    origin: 'value',
-    input,
-    key: complaint.key,
-    value: input[complaint.key],
-  } as const;
-  return { message: complaint.message, path: [item] };
+  return { path: [{ type: 'object', origin: 'value', input, key, value: input[key] }] };
 }

@@ -10,7 +10,7 @@ export function runSheetJsonSchema(): object {
   const ofCase = partly(convert(caseSchema));
   const properties = { ...object(sheet.properties) };
   properties.cases = {
-    description: 'Each is the sheet with these changes, solved and judged on its own.',
+    description: object(properties.cases).description,
     type: 'object',
     additionalProperties: withoutHead(ofCase),
   };
@@ -29,8 +29,8 @@ function convert(schema: Parameters<typeof toJsonSchema>[0]): Json {
   const made = toJsonSchema(schema, {
     typeMode: 'input',
     target: 'draft-2020-12',
-    // Checks over several keys have no form in JSON Schema; the program makes them.
-    ignoreActions: ['raw_check', 'raw_transform', 'transform'],
+    // What a value becomes, and checks over several keys, have no form in JSON Schema; the program makes them.
+    ignoreActions: ['raw_transform'],
   });
   return object(inline(made, object(object(made).$defs)));
 }

@@ -1,7 +1,7 @@
 import type { Quantity } from './units.ts';
 
 /** What `accept` may say about a rule: in which quantities its measure is, none for a rule that measures nothing. */
-export interface RuleMeasure {
+interface RuleMeasure {
   readonly quantities: readonly Quantity[];
   /** An entry must then say `up_to`. */
   readonly ceilingNeeded: boolean;
@@ -37,9 +37,9 @@ export const RULE_MEASURES: ReadonlyMap<string, RuleMeasure> = new Map([
   ...rules(['time'], ['residence-window']),
   ...rules(['flow'], ['flow-window']),
   ...rules(['wall_shear', 'ratio', 'share'], ['shear-window']),
-  ...optional(['length', 'ratio', 'share'], ['wrong-size', 'corner-notch', 'developing-flow']),
-  ...optional(['flow', 'ratio', 'share'], ['stagnant', 'backflow']),
-  ...optional(['pressure', 'flow'], ['pump-limit']),
+  ...rules(['length', 'ratio', 'share'], ['wrong-size', 'corner-notch', 'developing-flow'], false),
+  ...rules(['flow', 'ratio', 'share'], ['stagnant', 'backflow'], false),
+  ...rules(['pressure', 'flow'], ['pump-limit'], false),
   ...rules(
     [],
     [
@@ -71,16 +71,11 @@ export const UNACCEPTABLE_RULES: ReadonlySet<string> = new Set([
   'not-computed',
 ]);
 
+/** Rules measured in these quantities; each that is accepted must say how far, unless it measures nothing or may leave it open. */
 function rules(
   quantities: readonly Quantity[],
   names: readonly string[],
+  ceilingNeeded = quantities.length > 0,
 ): readonly (readonly [string, RuleMeasure])[] {
-  return names.map((name) => [name, { quantities, ceilingNeeded: quantities.length > 0 }] as const);
-}
-
-function optional(
-  quantities: readonly Quantity[],
-  names: readonly string[],
-): readonly (readonly [string, RuleMeasure])[] {
-  return names.map((name) => [name, { quantities, ceilingNeeded: false }] as const);
+  return names.map((name) => [name, { quantities, ceilingNeeded }] as const);
 }

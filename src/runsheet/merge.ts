@@ -1,6 +1,6 @@
-import { isPattern, longestMatch } from './names.ts';
-import type { PortValues, SheetValues } from './schema.ts';
-import type { MapEntry, MapNode, TreeNode } from './tree.ts';
+import { isPattern, longestMatch, recordOf } from './names.ts';
+import { EXCLUSIVE_KEYS, type SheetValues } from './schema.ts';
+import { isEmpty, type MapEntry, type MapNode, type TreeNode } from './tree.ts';
 
 /**
  * A case as a whole sheet: the base with the changes laid over it. Maps merge key by key, texts and lists replace.
@@ -15,16 +15,15 @@ export function mergeCase(base: MapNode, changes: MapNode): MapNode {
 
 function mergeMaps(base: MapNode, changes: MapNode, path: readonly string[]): MapNode {
   const entries = new Map<string, MapEntry>(base.entries);
-  for (const group of exclusive(path)) {
-    if (!group.some((alternative) => alternative.some((key) => changes.entries.has(key)))) continue;
-    for (const alternative of group) {
-      if (!alternative.some((key) => changes.entries.has(key)))
-        for (const key of alternative) entries.delete(key);
-    }
+  const alternatives =
+    EXCLUSIVE_KEYS.get(path[0] === 'ports' && path.length === 2 ? 'ports.*' : path.join('.')) ?? [];
+  const isGiven = (keys: readonly string[]): boolean => keys.some((key) => changes.entries.has(key));
+  if (alternatives.some(isGiven)) {
+    for (const key of alternatives.filter((keys) => !isGiven(keys)).flat()) entries.delete(key);
   }
   for (const [key, change] of changes.entries) {
     const before = entries.get(key) ?? coveringPort(base, key, path);
-    if (path.length === 0 && change.node.kind === 'text' && change.node.empty) continue;
+    if (path.length === 0 && isEmpty(change.node)) continue;
     const node = before === undefined ? change.node : mergeNodes(before.node, change.node, [...path, key]);
     entries.set(key, { node, line: change.line });
   }
@@ -49,20 +48,19 @@ export function keepPorts(
   changes: MapNode,
 ): SheetValues {
   const before = portsOf(baseRoot);
-  const ports: Record<string, PortValues> = Object.assign(Object.create(null), merged.ports);
-  for (const [name, { node }] of portsOf(changes)) {
+  const kept = [...portsOf(changes)].map(([name, { node }]) => {
     const key = before.has(name) ? name : longestMatch([...before.keys()].filter(isPattern), name);
-    const port = merged.ports?.[name];
-    const was = key === null ? undefined : base.ports?.[key];
-    if (port === undefined || was === undefined) continue;
+    const port = merged.ports[name];
+    if (key === null) return [name, port] as const;
+    const was = base.ports[key];
     if (node.kind === 'text') {
       const expect = port.condition.kind === 'sealed' ? null : was.expect;
-      ports[name] = { ...was, condition: port.condition, expect };
-    } else if (port.condition.kind === 'unset') {
-      ports[name] = { ...port, condition: was.condition };
+      return [name, { ...was, condition: port.condition, expect }] as const;
     }
-  }
-  return merged.ports === undefined ? merged : { ...merged, ports };
+    const condition = port.condition.kind === 'unset' ? was.condition : port.condition;
+    return [name, { ...port, condition }] as const;
+  });
+  return { ...merged, ports: recordOf([...Object.entries(merged.ports), ...kept]) };
 }
 
 /** What a sheet or a case writes under `ports`. */
@@ -80,12 +78,4 @@ function mergeNodes(base: TreeNode, change: TreeNode, path: readonly string[]): 
   )
     return change;
   return mergeMaps(base, change, path);
-}
-
-/** Groups of alternatives at a place in the sheet: giving one of a group takes the others away. */
-function exclusive(path: readonly string[]): readonly (readonly (readonly string[])[])[] {
-  if (path.length === 2 && path[0] === 'ports') return [[['pressure'], ['flow'], ['head']]];
-  if (path.length === 1 && path[0] === 'fluid') return [[['viscosity', 'density'], ['glycerol']]];
-  if (path.length === 1 && path[0] === 'tolerances') return [[['width'], ['width_bias', 'width_own']]];
-  return [];
 }

@@ -49,3 +49,8 @@ export function longestMatch(patterns: readonly string[], name: string): string 
 
 /** Names that no run sheet can hold: as keys of an object they would be something else. */
 export const UNUSABLE_KEYS: ReadonlySet<string> = new Set(['__proto__', 'constructor', 'prototype']);
+
+/** A record without a prototype: `ports['toString']` is undefined, whatever a drawing calls its ports. */
+export function recordOf<T>(entries: Iterable<readonly [string, T]>): Readonly<Record<string, T>> {
+  return Object.assign(Object.create(null), Object.fromEntries(entries));
+}

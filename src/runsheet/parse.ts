@@ -2,26 +2,13 @@ import * as v from 'valibot';
 import { InputError } from '../errors.ts';
 import { withDecodedNames } from './decoded-names.ts';
 import { keepPorts, mergeCase, portsOf } from './merge.ts';
-import { isPattern, layerKey, matches } from './names.ts';
+import { isPattern, layerKey, matches, recordOf } from './names.ts';
 import { nearest } from './nearest.ts';
 import { type KeyPath, pathText } from './path-text.ts';
 import { quote } from './quote.ts';
 import { caseSchema, SHEET_KEYS, type SheetValues, sheetSchema } from './schema.ts';
-import { lineAt, type MapEntry, type MapNode, parseTree, type TreeNode, toPlain } from './tree.ts';
-import type {
-  AcceptEntry,
-  ChannelEntry,
-  ConcentrationTarget,
-  LayerEntry,
-  Limits,
-  PortEntry,
-  PumpLimitEntry,
-  RunSheet,
-  Solute,
-  TargetEntry,
-  Tolerances,
-  Window,
-} from './types.ts';
+import { isEmpty, lineAt, type MapEntry, type MapNode, mapNodes, parseTree, toPlain } from './tree.ts';
+import type { Placed, RunSheet } from './types.ts';
 
 /**
  * Reads and checks a run sheet: every key, every unit, every window, each case merged and checked as a sheet of its own.
@@ -46,28 +33,16 @@ interface Source {
 const MOST_CASES = 100;
 const MOST_PATTERNS = 1000;
 
-/** A section with nothing after its colon (all of it commented out) counts as not written. */
+/** A section with nothing after its colon (all of it commented out) counts as not written; a case, as the sheet as it stands. */
 function withoutEmpty(root: MapNode): MapNode {
-  const entries = new Map<string, MapEntry>();
-  for (const [key, entry] of root.entries) {
-    if (entry.node.kind === 'text' && entry.node.empty && SHEET_KEYS.has(key)) continue;
-    entries.set(key, key === 'cases' ? { ...entry, node: withEmptyCases(entry.node) } : entry);
-  }
-  return { ...root, entries };
-}
-
-/** `culture:` with nothing after it is the sheet as it stands. */
-function withEmptyCases(node: TreeNode): TreeNode {
-  if (node.kind !== 'map') return node;
-  const entries = new Map<string, MapEntry>();
-  for (const [name, entry] of node.entries) {
-    const empty = entry.node.kind === 'text' && entry.node.empty;
-    entries.set(
-      name,
-      empty ? { ...entry, node: { kind: 'map', entries: new Map(), line: entry.line } } : entry,
-    );
-  }
-  return { ...node, entries };
+  const isWritten = ([key, { node }]: [string, MapEntry]): boolean => !isEmpty(node) || !SHEET_KEYS.has(key);
+  return mapNodes({ ...root, entries: new Map([...root.entries].filter(isWritten)) }, (node, key) =>
+    key === 'cases' && node.kind === 'map'
+      ? mapNodes(node, (change) =>
+          isEmpty(change) ? { kind: 'map', entries: new Map(), line: change.line } : change,
+        )
+      : node,
+  );
 }
 
 function parseCases(root: MapNode, values: SheetValues, source: Source): RunSheet['cases'] {
@@ -167,113 +142,34 @@ function toRunSheet(values: SheetValues, root: MapNode, source: Source, prefix: 
   refuseLayerTwins(values, refuse);
   refusePatterns(values, refuse);
   refuseUndeclaredSolutes(values, refuse);
+  const placed = <T>(
+    section: string,
+    given: Readonly<Record<string, T>>,
+  ): Readonly<Record<string, T & Placed>> =>
+    recordOf(Object.entries(given).map(([name, entry]) => [name, { ...entry, line: at(section, name) }]));
+  const targets = values.targets.map((target, index) => ({ ...target, index, line: at('targets', index) }));
   return {
+    ...values,
     ...source,
-    title: values.title ?? null,
-    drawing: {
-      number: values.drawing?.number ?? null,
-      revision: values.drawing?.revision ?? null,
-      drawnBy: values.drawing?.drawn_by ?? null,
-    },
-    unitMm: values.unit === undefined ? null : inMm(values.unit),
-    sizeMm: values.size === undefined ? null : [inMm(values.size[0]), inMm(values.size[1])],
-    outline: values.outline ?? null,
-    portsLayer: values.ports_layer ?? null,
-    ignore: values.ignore ?? [],
-    joinWithinMm: values.join_within === undefined ? null : inMm(values.join_within),
-    joints: values.joints ?? null,
-    process: values.process ?? null,
-    fluid: values.fluid ?? null,
-    temperatureK: values.temperature ?? null,
-    depthM: values.depth ?? null,
-    layers: mapNames(values.layers, (layer, name): LayerEntry => {
-      const line = at('layers', name);
-      if (layer === 'ignore') return { kind: 'ignore', line };
-      const { depth, profile, plane } = layer;
-      return { kind: 'etched', depthM: depth ?? null, profile: profile ?? null, plane: plane ?? null, line };
-    }),
-    ports: mapNames(values.ports, (port, name): PortEntry => {
-      const tubing = port.tubing.map((piece) => ({
-        boreM: piece.bore,
-        lengthM: piece.length,
-        temperatureK: piece.temperature ?? null,
-      }));
-      const { condition, expect, concentration } = port;
-      return { condition, tubing, expect, concentration, line: at('ports', name) };
-    }),
-    channels: mapNames(values.channels, (channel, name): ChannelEntry => {
-      const { wall_shear: shear, residence_time: time, flow, walls } = channel;
-      return {
-        wallShear: shear === undefined ? null : { ...toWindow(shear), over: shear.over ?? null },
-        residenceTime: time === undefined ? null : toWindow(time),
-        flow: flow === undefined ? null : toWindow(flow),
-        walls: walls ?? 'floor',
-        even: channel.even ?? null,
-        concentration:
-          channel.concentration === undefined
-            ? null
-            : mapNames(channel.concentration, (one) => ({ ...toWindow(one), over: one.over ?? null })),
-        mixing: channel.mixing === undefined ? null : mapNames(channel.mixing, ({ min }) => min),
-        line: at('channels', name),
-      };
-    }),
-    solutes: mapNames(
-      values.solutes,
-      ({ diffusion, unit }): Solute => ({ diffusionM2s: diffusion, unit: unit ?? null }),
-    ),
-    junctions: values.junctions ?? null,
-    switch:
-      values.switch === undefined
-        ? null
-        : {
-            from: values.switch.from ?? null,
-            reach: values.switch.reach ?? null,
-            to: values.switch.to ?? null,
-            withinS: values.switch.within ?? null,
-            line: at('switch'),
-          },
-    fields: values.fields ?? [],
-    pillars: values.pillars ?? [],
-    ...toTargets(values, at),
-    pumpLimits: mapNames(values.pump_limits, (limit, name): PumpLimitEntry => {
-      const line = at('pump_limits', name);
-      const { max_pressure, min_pressure, max_flow } = limit;
-      return {
-        maxPressurePa: max_pressure ?? null,
-        minPressurePa: min_pressure ?? null,
-        maxFlowM3s: max_flow ?? null,
-        line,
-      };
-    }),
-    limits: toLimits(values.limits),
-    tolerances: values.tolerances === undefined ? null : toTolerances(values.tolerances),
+    layers: placed('layers', values.layers),
+    ports: placed('ports', values.ports),
+    channels: placed('channels', values.channels),
+    pumpLimits: placed('pump_limits', values.pumpLimits),
+    switch: values.switch === null ? null : { ...values.switch, line: at('switch') },
+    targets: targets.filter((target) => target.quantity !== 'concentration'),
+    concentrationTargets: targets.filter((target) => target.quantity === 'concentration'),
+    accept: values.accept.map((entry, i) => ({ ...entry, line: at('accept', i) })),
     cases: [],
-    show: toShow(values.show),
-    accept: (values.accept ?? []).map((entry, i): AcceptEntry => ({ ...entry, line: at('accept', i) })),
     changedPorts: [],
     lineOf,
   };
-}
-
-function toTargets(
-  { targets = [] }: SheetValues,
-  at: (...path: KeyPath) => number,
-): Pick<RunSheet, 'targets' | 'concentrationTargets'> {
-  const computed: TargetEntry[] = [];
-  const ofConcentration: ConcentrationTarget[] = [];
-  for (const [index, target] of targets.entries()) {
-    const line = at('targets', index);
-    if (target.quantity === 'concentration') ofConcentration.push({ ...target, index, line });
-    else computed.push({ ...target, index, line });
-  }
-  return { targets: computed, concentrationTargets: ofConcentration };
 }
 
 type Refuse = (path: KeyPath, message: string) => never;
 
 function refuseLayerTwins(values: SheetValues, refuse: Refuse): void {
   const first = new Map<string, string>();
-  for (const name of Object.keys(values.layers ?? {})) {
+  for (const name of Object.keys(values.layers)) {
     const key = layerKey(name);
     const twin = first.get(key);
     if (twin !== undefined)
@@ -290,18 +186,14 @@ function refusePatterns(values: SheetValues, refuse: Refuse): void {
     if (names.filter(isPattern).length <= MOST_PATTERNS) return;
     refuse(path, `more than the limit "patterns" of ${MOST_PATTERNS} names with *`);
   };
-  const { targets = [], accept = [] } = values;
-  limit(['ports'], Object.keys(values.ports ?? {}));
-  limit(['channels'], Object.keys(values.channels ?? {}));
-  limit(['ignore'], values.ignore ?? []);
-  limit(
-    ['targets'],
-    targets.map(({ name }) => name),
-  );
-  limit(
-    ['accept'],
-    accept.map(({ at }) => at),
-  );
+  const { targets } = values;
+  const ofTargets = targets.map(({ name }) => name);
+  const ofAccepted = values.accept.map(({ at }) => at);
+  limit(['ports'], Object.keys(values.ports));
+  limit(['channels'], Object.keys(values.channels));
+  limit(['ignore'], values.ignore);
+  limit(['targets'], ofTargets);
+  limit(['accept'], ofAccepted);
   for (const [i, { by }] of targets.entries()) {
     if (isPattern(by))
       refuse(['targets', i, 'by'], `${quote(by)} is a pattern; a target is met by one port, named in full`);
@@ -310,7 +202,7 @@ function refusePatterns(values: SheetValues, refuse: Refuse): void {
 
 /** What a fluid carries must be one of the sheet's solutes: a name misspelt would be another solute, and nought of the one meant. */
 function refuseUndeclaredSolutes(values: SheetValues, refuse: Refuse): void {
-  const declared = Object.keys(values.solutes ?? {});
+  const declared = Object.keys(values.solutes);
   const known = new Set(declared);
   const look = (path: KeyPath, names: Iterable<string>): void => {
     for (const name of names) {
@@ -325,85 +217,12 @@ function refuseUndeclaredSolutes(values: SheetValues, refuse: Refuse): void {
       refuse([...path, name], `${quote(name)} is not among the solutes; ${hint}`);
     }
   };
-  for (const [name, port] of Object.entries(values.ports ?? {}))
+  for (const [name, port] of Object.entries(values.ports))
     look(['ports', name, 'concentration'], Object.keys(port.concentration ?? {}));
-  for (const [name, { concentration, mixing }] of Object.entries(values.channels ?? {})) {
+  for (const [name, { concentration, mixing }] of Object.entries(values.channels)) {
     look(['channels', name, 'concentration'], Object.keys(concentration ?? {}));
     look(['channels', name, 'mixing'], Object.keys(mixing ?? {}));
   }
-  for (const [i, target] of (values.targets ?? []).entries())
+  for (const [i, target] of values.targets.entries())
     if (target.quantity === 'concentration') look(['targets', i, 'concentration'], [target.solute]);
-}
-
-function inMm(metres: number): number {
-  return metres * 1000;
-}
-
-function toWindow({
-  min,
-  max,
-}: {
-  readonly min?: number | undefined;
-  readonly max?: number | undefined;
-}): Window {
-  return { min: min ?? null, max: max ?? null };
-}
-
-function toLimits(given: SheetValues['limits']): Limits {
-  return {
-    minWidthM: given?.min_width ?? null,
-    minWallM: given?.min_wall ?? null,
-    maxWidthToDepth: given?.max_width_to_depth ?? null,
-    maxDepthToWidth: given?.max_depth_to_width ?? null,
-    edgeMarginM: given?.edge_margin ?? null,
-    portGapM: given?.port_gap ?? null,
-    portDiameterM: given?.port_diameter ?? null,
-    portGridM: given?.port_grid ?? null,
-    maxPressurePa: given?.max_pressure ?? null,
-    minPressurePa: given?.min_pressure ?? null,
-    maxReynolds: given?.max_reynolds ?? null,
-    minCornerAngleRad: given?.min_corner_angle ?? null,
-    stiffnessPa: given?.stiffness ?? null,
-  };
-}
-
-function toTolerances(given: NonNullable<SheetValues['tolerances']>): Tolerances {
-  return {
-    depth: given.depth?.all ?? null,
-    depthByLayer: given.depth?.byName ?? noNames(),
-    depthCommon: given.depth_common ?? null,
-    width: given.width ?? null,
-    widthBias: given.width_bias ?? null,
-    widthOwn: given.width_own ?? null,
-    temperature: given.temperature ?? null,
-    viscosity: given.viscosity ?? null,
-    pressure: given.pressure?.all ?? null,
-    flow: given.flow?.all ?? null,
-    pressureByPort: given.pressure?.byName ?? noNames(),
-    flowByPort: given.flow?.byName ?? noNames(),
-    bore: given.bore ?? null,
-  };
-}
-
-function toShow(given: SheetValues['show']): RunSheet['show'] {
-  const show: { -readonly [K in keyof RunSheet['show']]: RunSheet['show'][K] } = {};
-  for (const key of ['flow', 'pressure', 'wall_shear', 'residence_time', 'velocity'] as const) {
-    const unit = given?.[key];
-    if (unit !== undefined) show[key] = unit;
-  }
-  return show;
-}
-
-/** Records without a prototype: `ports['toString']` is undefined, whatever a drawing calls its ports. */
-function mapNames<A, B>(
-  given: Readonly<Record<string, A>> | undefined,
-  to: (value: A, name: string) => B,
-): Readonly<Record<string, B>> {
-  const result: Record<string, B> = noNames();
-  for (const [name, value] of Object.entries(given ?? {})) result[name] = to(value, name);
-  return result;
-}
-
-function noNames<T>(): Record<string, T> {
-  return Object.create(null);
 }

@@ -13,3 +13,8 @@ const UNPRINTABLE = /[\u0000-\u001f\u007f-\u009f\u200e\u200f\u2028-\u202e\u2066-
 function escaped(character: string): string {
   return `\\u${character.charCodeAt(0).toString(16).padStart(4, '0')}`;
 }
+
+/** The end of a message: what would have been right. */
+export function hint(example: string): string {
+  return `write for example ${/^[{[]/.test(example) ? example : `"${example}"`}`;
+}

@@ -1,18 +1,6 @@
 import type { ShowUnits } from './types.ts';
 import { unitFactor } from './units.ts';
 
-/** What a number on screen or paper measures. Lengths along a channel and across it have units of their own. */
-export type Shown =
-  | 'flow'
-  | 'pressure'
-  | 'wall_shear'
-  | 'residence_time'
-  | 'velocity'
-  | 'length'
-  | 'cross_length'
-  | 'resistance'
-  | 'volume';
-
 export interface Unit {
   readonly text: string;
   /** SI value of one of this unit. */
@@ -27,102 +15,57 @@ export interface Show {
   readonly text: (shown: Shown, value: number | null) => string;
 }
 
-const LADDERS: Record<Shown, { readonly usual: string; readonly units: readonly Unit[] }> = {
-  flow: {
-    usual: 'µL/min',
-    units: [
-      { text: 'pL/min', si: 1e-15 / 60 },
-      { text: 'nL/min', si: 1e-12 / 60 },
-      { text: 'µL/min', si: 1e-9 / 60 },
-      { text: 'mL/min', si: 1e-6 / 60 },
-      { text: 'L/min', si: 1e-3 / 60 },
-    ],
-  },
-  pressure: {
-    usual: 'kPa',
-    units: [
-      { text: 'mPa', si: 1e-3 },
-      { text: 'Pa', si: 1 },
-      { text: 'kPa', si: 1e3 },
-      { text: 'MPa', si: 1e6 },
-    ],
-  },
-  wall_shear: {
-    usual: 'Pa',
-    units: [
-      { text: 'µPa', si: 1e-6 },
-      { text: 'mPa', si: 1e-3 },
-      { text: 'Pa', si: 1 },
-      { text: 'kPa', si: 1e3 },
-    ],
-  },
-  residence_time: {
-    usual: 's',
-    units: [
-      { text: 'µs', si: 1e-6 },
-      { text: 'ms', si: 1e-3 },
-      { text: 's', si: 1 },
-      { text: 'min', si: 60 },
-      { text: 'h', si: 3600 },
-    ],
-  },
-  velocity: {
-    usual: 'mm/s',
-    units: [
-      { text: 'nm/s', si: 1e-9 },
-      { text: 'µm/s', si: 1e-6 },
-      { text: 'mm/s', si: 1e-3 },
-      { text: 'm/s', si: 1 },
-    ],
-  },
-  length: {
-    usual: 'mm',
-    units: [
-      { text: 'µm', si: 1e-6 },
-      { text: 'mm', si: 1e-3 },
-      { text: 'm', si: 1 },
-    ],
-  },
-  cross_length: {
-    usual: 'µm',
-    units: [
-      { text: 'nm', si: 1e-9 },
-      { text: 'µm', si: 1e-6 },
-      { text: 'mm', si: 1e-3 },
-      { text: 'm', si: 1 },
-    ],
-  },
-  resistance: {
-    usual: '10¹² Pa s/m³',
-    units: [
-      { text: 'Pa s/m³', si: 1 },
-      { text: '10³ Pa s/m³', si: 1e3 },
-      { text: '10⁶ Pa s/m³', si: 1e6 },
-      { text: '10⁹ Pa s/m³', si: 1e9 },
-      { text: '10¹² Pa s/m³', si: 1e12 },
-      { text: '10¹⁵ Pa s/m³', si: 1e15 },
-      { text: '10¹⁸ Pa s/m³', si: 1e18 },
-      { text: '10²¹ Pa s/m³', si: 1e21 },
-    ],
-  },
-  volume: {
-    usual: 'µL',
-    units: [
-      { text: 'fL', si: 1e-18 },
-      { text: 'pL', si: 1e-15 },
-      { text: 'nL', si: 1e-12 },
-      { text: 'µL', si: 1e-9 },
-      { text: 'mL', si: 1e-6 },
-      { text: 'L', si: 1e-3 },
-    ],
-  },
+const LADDERS = {
+  flow: ladder('µL/min', {
+    'pL/min': 1e-15 / 60,
+    'nL/min': 1e-12 / 60,
+    'µL/min': 1e-9 / 60,
+    'mL/min': 1e-6 / 60,
+    'L/min': 1e-3 / 60,
+  }),
+  pressure: ladder('kPa', { mPa: 1e-3, Pa: 1, kPa: 1e3, MPa: 1e6 }),
+  wall_shear: ladder('Pa', { µPa: 1e-6, mPa: 1e-3, Pa: 1, kPa: 1e3 }),
+  residence_time: ladder('s', { µs: 1e-6, ms: 1e-3, s: 1, min: 60, h: 3600 }),
+  velocity: ladder('mm/s', { 'nm/s': 1e-9, 'µm/s': 1e-6, 'mm/s': 1e-3, 'm/s': 1 }),
+  length: ladder('mm', { µm: 1e-6, mm: 1e-3, m: 1 }),
+  cross_length: ladder('µm', { nm: 1e-9, µm: 1e-6, mm: 1e-3, m: 1 }),
+  resistance: ladder('10¹² Pa s/m³', {
+    'Pa s/m³': 1,
+    '10³ Pa s/m³': 1e3,
+    '10⁶ Pa s/m³': 1e6,
+    '10⁹ Pa s/m³': 1e9,
+    '10¹² Pa s/m³': 1e12,
+    '10¹⁵ Pa s/m³': 1e15,
+    '10¹⁸ Pa s/m³': 1e18,
+    '10²¹ Pa s/m³': 1e21,
+  }),
+  volume: ladder('µL', { fL: 1e-18, pL: 1e-15, nL: 1e-12, µL: 1e-9, mL: 1e-6, L: 1e-3 }),
 };
+
+/** What a number on screen or paper measures. Lengths along a channel and across it have units of their own. */
+export type Shown = keyof typeof LADDERS;
+
+/** A quantity's units from the smallest up, by their SI values. */
+interface Ladder {
+  readonly usual: Unit;
+  readonly units: readonly Unit[];
+}
+
+function ladder<Units extends Readonly<Record<string, number>>>(
+  usual: keyof Units & string,
+  units: Units,
+): Ladder {
+  return {
+    usual: { text: usual, si: units[usual] },
+    units: Object.entries(units).map(([text, si]) => ({ text, si })),
+  };
+}
 
 /** Settles the units of a run sheet's `show` (or none) into a Show. */
 export function showOf(show: ShowUnits | null): Show {
   const fixed = new Map<Shown, Unit>();
   for (const [quantity, text] of Object.entries(show ?? {})) {
-    if (text === undefined) continue;
+    if (text === null) continue;
     // the keys of ShowUnits are all members of Shown
     const shown = quantity as keyof ShowUnits;
     fixed.set(shown, {
@@ -147,9 +90,8 @@ const CLIMBING: ReadonlySet<Shown> = new Set(['residence_time', 'resistance']);
 /** The usual unit while the value reads well in it (0.01 to 10 000), else the largest unit that the value reaches. */
 function fittingUnit(shown: Shown, largest: number): Unit {
   const { usual, units } = LADDERS[shown];
-  const usualUnit = units.find((unit) => unit.text === usual) ?? units[0];
-  const inUsual = largest / usualUnit.si;
-  if (!(largest > 0) || (inUsual >= 0.01 && inUsual < 1e4 && !CLIMBING.has(shown))) return usualUnit;
+  const inUsual = largest / usual.si;
+  if (!(largest > 0) || (inUsual >= 0.01 && inUsual < 1e4 && !CLIMBING.has(shown))) return usual;
   // times go up to the next unit as soon as they reach two of it: 119 s, but 2 min
   const reach = shown === 'residence_time' ? 2 : 1;
   let best = units[0];

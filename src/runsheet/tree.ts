@@ -26,7 +26,7 @@ import { UNUSABLE_KEYS } from './names.ts';
 import { type KeyPath, pathText } from './path-text.ts';
 import { quote } from './quote.ts';
 
-export interface TextNode {
+interface TextNode {
   readonly kind: 'text';
   readonly text: string;
   readonly line: number;
@@ -43,7 +43,7 @@ export interface MapNode {
   readonly entries: ReadonlyMap<string, MapEntry>;
   readonly line: number;
 }
-export interface ListNode {
+interface ListNode {
   readonly kind: 'list';
   readonly items: readonly TreeNode[];
   readonly line: number;
@@ -96,6 +96,21 @@ export function toPlain(node: TreeNode): unknown {
     default:
       return node satisfies never;
   }
+}
+
+/** The map with each of its nodes changed, under the same keys. */
+export function mapNodes(map: MapNode, change: (node: TreeNode, key: string) => TreeNode): MapNode {
+  const entries = new Map<string, MapEntry>();
+  for (const [key, entry] of map.entries) {
+    const node = change(entry.node, key);
+    entries.set(key, node === entry.node ? entry : { ...entry, node });
+  }
+  return { ...map, entries };
+}
+
+/** Whether nothing was written: `ports:` with nothing after it. */
+export function isEmpty(node: TreeNode): boolean {
+  return node.kind === 'text' && node.empty;
 }
 
 /** Line of the key or list item at a path, 1-based; null when it is not there. */
@@ -181,7 +196,7 @@ function refuseErrors(document: Document.Parsed, text: string, file: string, at:
 
 function sayError(error: YAMLError, sameLine: readonly YAMLError[], source: string): string {
   const star = /(?:^|[\s{[,])(\*[^\s:,\]}]*)/.exec(source.replace(/"[^"]*"|'[^']*'|#.*$/g, ''));
-  if (star !== null) return starMessage(star[1]!);
+  if (star !== null) return starMessage(star[1]);
   if (sameLine.some(({ code }) => code === 'TAB_AS_INDENT')) {
     return 'is indented with a tab; YAML takes spaces only, so put two spaces instead';
   }
@@ -205,7 +220,7 @@ function starMessage(star: string): string {
 }
 
 function firstLine(message: string): string {
-  return message.split(/[\n;]/, 1)[0]!.slice(0, 100);
+  return message.split(/[\n;]/, 1)[0].slice(0, 100);
 }
 
 function lowerFirst(message: string): string {

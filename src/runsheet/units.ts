@@ -7,24 +7,7 @@
  */
 import { createUnitClass, type Unit as MathUnit, type UnitCtor } from 'mathjs';
 import { nearest } from './nearest.ts';
-import { quote } from './quote.ts';
-
-export type Quantity =
-  | 'length'
-  | 'pressure'
-  | 'wall_shear'
-  | 'flow'
-  | 'time'
-  | 'velocity'
-  | 'viscosity'
-  | 'density'
-  | 'temperature'
-  | 'temperature_difference'
-  | 'angle'
-  | 'share'
-  | 'ratio'
-  | 'diffusion'
-  | 'concentration';
+import { hint, quote } from './quote.ts';
 
 /** Text that is not the quantity asked for. The message says what is wrong and gives a right example; the caller adds where. */
 export class QuantityError extends Error {
@@ -53,7 +36,7 @@ export function parseQuantity(text: string, quantity: Quantity, exampleUnit?: st
   if (unitText === '') throw new QuantityError(`${quote(text)} has no unit; ${example}`);
   const scale = scaleOf(unitText);
   if (scale === null) {
-    const near = nearest(unitText, spellings(quantity));
+    const near = nearest(unitText, kind.spellings);
     const guess = near === null || near === unitText ? '' : ` (did you mean ${quote(near)}?)`;
     throw new QuantityError(
       `${quote(text)}: ${quote(unitText)} is not a unit known here${guess}; ${example}`,
@@ -73,31 +56,9 @@ export function parseQuantity(text: string, quantity: Quantity, exampleUnit?: st
   return si;
 }
 
-/**
- * Smallest and largest size in SI units (0 is always read): far beyond anything on a chip, and narrow enough that a
- * resistance, with the cube of a depth in it, still fits a double.
- */
-const SIZES: Readonly<Record<Quantity, readonly [number, number]>> = {
-  length: [1e-12, 1e4],
-  pressure: [1e-12, 1e12],
-  wall_shear: [1e-12, 1e12],
-  flow: [1e-30, 1e6],
-  time: [1e-12, 1e15],
-  velocity: [1e-18, 1e6],
-  viscosity: [1e-9, 1e9],
-  density: [1e-9, 1e9],
-  temperature: [0, 1e6],
-  temperature_difference: [0, 1e6],
-  angle: [0, 1e3],
-  share: [1e-12, 1e9],
-  ratio: [1e-12, 1e12],
-  diffusion: [1e-30, 1],
-  concentration: [1e-30, 1e30],
-};
-
 function refuseBeyond(text: string, si: number, quantity: Quantity, usual: string): void {
   const size = Math.abs(si);
-  const [least, most] = SIZES[quantity];
+  const { least, most } = KINDS[quantity];
   if (size > most) throw new QuantityError(`${quote(text)} is too large for a chip; ${usual}`);
   if (size !== 0 && size < least) throw new QuantityError(`${quote(text)} is too small for a chip; ${usual}`);
 }
@@ -112,7 +73,7 @@ export function unitFactor(unitText: string, quantity: Quantity): number {
   const example = hint(kind.exampleUnit);
   const scale = scaleOf(unitText);
   if (scale === null) {
-    const near = nearest(unitText, spellings(quantity));
+    const near = nearest(unitText, kind.spellings);
     const guess = near === null ? '' : ` (did you mean ${quote(near)}?)`;
     throw new QuantityError(`${quote(unitText)} is not a unit known here${guess}; ${example}`);
   }
@@ -124,33 +85,29 @@ export function unitFactor(unitText: string, quantity: Quantity): number {
   return scale.difference(1);
 }
 
-/** An SI value in a unit, to four significant digits and without trailing zeros: "12.5 kPa". No locale, no -0, no exponent between 1e-4 and 1e6. */
-export function formatQuantity(valueSi: number, unitText: string, quantity: Quantity): string {
-  const value = valueSi / unitFactor(unitText, quantity);
-  const rounded = Number(value.toPrecision(4)) + 0;
-  const size = Math.abs(rounded);
-  const digits =
-    rounded === 0 || (size >= 1e-4 && size < 1e6)
-      ? String(rounded)
-      : rounded.toExponential().replace('e+', 'e');
-  return unitText.trim() === '%' ? `${digits} %` : `${digits} ${unitText.trim()}`;
-}
-
-/** What a quantity is called in a sentence ("a pressure"), a right example of it ("12 kPa"), and whether it is a bare number. */
+/** What a quantity is called in a sentence ("a pressure"), a right example of it ("12 kPa"), its SI unit ("" for a ratio), and whether it is a bare number. */
 export function describeQuantity(quantity: Quantity): {
   readonly word: string;
   readonly example: string;
+  readonly siUnit: string;
   readonly isBare: boolean;
 } {
-  const { word, exampleNumber, exampleUnit, plain } = KINDS[quantity];
-  return { word, example: `${exampleNumber} ${exampleUnit}`.trim(), isBare: plain !== null };
+  const { word, exampleNumber, exampleUnit, siUnit, plain } = KINDS[quantity];
+  return { word, example: `${exampleNumber} ${exampleUnit}`.trim(), siUnit, isBare: plain !== null };
 }
 
 interface Kind {
   readonly word: string;
   readonly exampleUnit: string;
   readonly exampleNumber: string;
+  readonly siUnit: string;
   readonly dimension: string;
+  /**
+   * Smallest and largest size in SI units (0 is always read): far beyond anything on a chip, and narrow enough that a
+   * resistance, with the cube of a depth in it, still fits a double.
+   */
+  readonly least: number;
+  readonly most: number;
   readonly spellings: readonly string[];
   /** Why it has no unit, for a quantity that is a bare number; null for the others. */
   readonly plain: string | null;
@@ -228,52 +185,68 @@ const PRESSURES = [
   ...['Pa', 'hPa', 'kPa', 'MPa', 'bar', 'mbar', 'psi', 'mmHg', 'torr'],
   ...['inH2O', 'cmH2O', 'mmH2O', 'dyn/cm^2', 'atm', 'mPa'],
 ];
+const TEMPERATURES = ['degC', '°C', 'K', 'degF'];
 const VOLUMES = ['nL', 'uL', 'µL', 'mL', 'L', 'pL'];
+const FLOWS = [
+  ...VOLUMES.flatMap((volume) => ['s', 'min', 'h', 'hr'].map((time) => `${volume}/${time}`)),
+  'm^3/s',
+];
+const LENGTHS = ['um', 'µm', 'mm', 'cm', 'm', 'nm', 'in', 'thou', 'mil'];
+const VELOCITIES = ['m/s', 'cm/s', 'mm/s', 'um/s', 'µm/s', 'mm/min'];
+const VISCOSITIES = ['mPa s', 'mPa·s', 'mPa*s', 'mPa.s', 'Pa s', 'cP'];
+const DENSITIES = ['kg/m^3', 'kg/m3', 'kg/m³', 'g/mL', 'g/cm^3'];
+const DIFFUSIONS = ['m^2/s', 'm2/s', 'm²/s', 'cm^2/s', 'mm^2/s', 'um^2/s', 'µm^2/s', 'µm²/s'];
 
-const KINDS: Readonly<Record<Quantity, Kind>> = {
-  length: kind('a length', '50', 'um', 'm', ['um', 'µm', 'mm', 'cm', 'm', 'nm', 'in', 'thou', 'mil']),
-  pressure: kind('a pressure', '12', 'kPa', 'Pa', PRESSURES),
-  wall_shear: kind('a wall shear', '0.3', 'Pa', 'Pa', PRESSURES),
-  flow: kind('a flow', '2', 'uL/min', 'm^3/s', [
-    ...VOLUMES.flatMap((volume) => ['s', 'min', 'h', 'hr'].map((time) => `${volume}/${time}`)),
-    'm^3/s',
-  ]),
-  time: kind('a time', '10', 's', 's', ['s', 'ms', 'min', 'h', 'hr']),
-  velocity: kind('a velocity', '1', 'mm/s', 'm/s', ['m/s', 'cm/s', 'mm/s', 'um/s', 'µm/s', 'mm/min']),
-  viscosity: kind('a viscosity', '0.94', 'mPa s', 'Pa s', ['mPa s', 'mPa·s', 'mPa*s', 'mPa.s', 'Pa s', 'cP']),
-  density: kind('a density', '1003', 'kg/m^3', 'kg/m^3', ['kg/m^3', 'kg/m3', 'kg/m³', 'g/mL', 'g/cm^3']),
-  temperature: kind('a temperature', '37', 'degC', 'K', ['degC', '°C', 'K', 'degF']),
-  temperature_difference: kind('a temperature difference', '1', 'degC', 'K', ['degC', '°C', 'K', 'degF']),
-  angle: kind('an angle', '30', 'deg', 'rad', ['deg', '°', 'rad']),
-  share: kind('a percentage', '80', '%', null, ['%']),
-  ratio: bare('a plain ratio', '10', 'this is a plain ratio'),
-  diffusion: kind('a diffusion coefficient', '5e-10', 'm^2/s', 'm^2/s', [
-    ...['m^2/s', 'm2/s', 'm²/s', 'cm^2/s', 'mm^2/s', 'um^2/s', 'µm^2/s', 'µm²/s'],
-  ]),
+const KINDS = {
+  length: kind('a length', '50 um', 'm', 1e-12, 1e4, LENGTHS),
+  pressure: kind('a pressure', '12 kPa', 'Pa', 1e-12, 1e12, PRESSURES),
+  wall_shear: kind('a wall shear', '0.3 Pa', 'Pa', 1e-12, 1e12, PRESSURES),
+  flow: kind('a flow', '2 uL/min', 'm³/s', 1e-30, 1e6, FLOWS),
+  time: kind('a time', '10 s', 's', 1e-12, 1e15, ['s', 'ms', 'min', 'h', 'hr']),
+  velocity: kind('a velocity', '1 mm/s', 'm/s', 1e-18, 1e6, VELOCITIES),
+  viscosity: kind('a viscosity', '0.94 mPa s', 'Pa s', 1e-9, 1e9, VISCOSITIES),
+  density: kind('a density', '1003 kg/m^3', 'kg/m³', 1e-9, 1e9, DENSITIES),
+  temperature: kind('a temperature', '37 degC', 'K', 0, 1e6, TEMPERATURES),
+  temperature_difference: kind('a temperature difference', '1 degC', 'K', 0, 1e6, TEMPERATURES),
+  angle: kind('an angle', '30 deg', 'rad', 0, 1e3, ['deg', '°', 'rad']),
+  share: kind('a percentage', '80 %', '', 1e-12, 1e9, ['%']),
+  ratio: bare('a plain ratio', 1e-12, 1e12, 'this is a plain ratio'),
+  diffusion: kind('a diffusion coefficient', '5e-10 m^2/s', 'm²/s', 1e-30, 1, DIFFUSIONS),
   concentration: bare(
     'a concentration',
-    '10',
+    1e-30,
+    1e30,
     'a concentration is a bare number, its unit stands under solutes',
   ),
 };
 
+export type Quantity = keyof typeof KINDS;
+
 function kind(
   word: string,
-  exampleNumber: string,
-  exampleUnit: string,
-  siUnit: string | null,
+  example: string,
+  siUnit: string,
+  least: number,
+  most: number,
   known: readonly string[],
 ): Kind {
-  const dimension = siUnit === null ? RATIO : dimensionOf(new Unit(1, siUnit));
-  return { word, exampleNumber, exampleUnit, dimension, spellings: known, plain: null };
+  const [exampleNumber, ...rest] = example.split(' ');
+  const dimension = siUnit === '' ? RATIO : dimensionOf(new Unit(1, unify(siUnit)));
+  return {
+    word,
+    exampleNumber,
+    exampleUnit: rest.join(' '),
+    siUnit,
+    dimension,
+    least,
+    most,
+    spellings: known,
+    plain: null,
+  };
 }
 
-function bare(word: string, exampleNumber: string, plain: string): Kind {
-  return { word, exampleNumber, exampleUnit: '', dimension: RATIO, spellings: [], plain };
-}
-
-function spellings(quantity: Quantity): readonly string[] {
-  return KINDS[quantity].spellings;
+function bare(word: string, least: number, most: number, plain: string): Kind {
+  return { ...kind(word, '10', '', least, most, []), plain };
 }
 
 /** What a wrong dimension is called. */
@@ -342,8 +315,8 @@ function splitNumber(
     const wanted = unitShown === '' ? 'a number' : 'a number with a unit';
     throw new QuantityError(`${quote(text)} is not ${wanted}; ${usual}`);
   }
-  const numberText = match[1]!;
-  const unitText = match[2]!.trim();
+  const numberText = match[1];
+  const unitText = match[2].trim();
   if (/^[-+–—:/]?\s*\d/.test(unitText)) {
     throw new QuantityError(`${quote(text)} is more than one number; ${usual}`);
   }
@@ -353,10 +326,6 @@ function splitNumber(
     throw new QuantityError(`${quote(text)} is too small to hold; ${usual}`);
   }
   return { value: value + 0, numberText, unitText };
-}
-
-function hint(example: string): string {
-  return `write for example "${example}"`;
 }
 
 const scales = new Map<string, Scale | null>();
@@ -379,7 +348,7 @@ function readScale(unitText: string): Scale | null {
   const unit = mathUnit(unified);
   if (unit === null) return null;
   const difference = linear(factorOf(unit));
-  const offset = unit.units.length === 1 ? unit.units[0]!.unit.offset : 0;
+  const offset = unit.units.length === 1 ? unit.units[0].unit.offset : 0;
   return {
     dimension: dimensionOf(unit),
     difference,

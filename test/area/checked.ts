@@ -12,7 +12,7 @@ import { readSvg } from '../../src/svg/read.ts';
 export function checkedOf(svg: string, sheetText: string | null, file = 'drawing'): Checked {
   const layout = layOut(readSvg(svg, `${file}.svg`), `${file}.svg`);
   const sheet = sheetText === null ? null : parseRunSheet(sheetText, `${file}.run.yaml`);
-  const { chip, run } = assembleChip({ layout, sheet, file: `${file}.svg`, layoutSha256: '0'.repeat(64) });
+  const { chip, run } = assembleChip({ layout, sheet, file: `${file}.svg` });
   const network = buildNetwork(chip);
   return { network, report: findAll({ chip, run, network, flow: solveFlow(network, run) }) };
 }

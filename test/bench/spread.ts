@@ -34,7 +34,7 @@ function made(name: string, svg: string, sheetText: string): Made {
   const sheet = parseRunSheet(sheetText, `${name}.run.yaml`);
   if (sheet.tolerances === null) throw new Error(`${name} has no tolerances`);
   const layout = layOut(readSvg(svg, `${name}.svg`), `${name}.svg`);
-  const { chip, run } = assembleChip({ layout, sheet, file: `${name}.svg`, layoutSha256: '0'.repeat(64) });
+  const { chip, run } = assembleChip({ layout, sheet, file: `${name}.svg` });
   return { network: buildNetwork(chip), run, tolerances: sheet.tolerances };
 }
 

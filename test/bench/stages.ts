@@ -33,21 +33,16 @@ export async function measureStages({ name, svg, sheet: sheetText }: BigLayout):
   const drawing = timed('read', () => readSvg(svg, file));
   const layout = timed('lay out', () => layOut(drawing, file));
   const sheet = timed('chip', () => parseRunSheet(sheetText, 'bench.run.yaml'));
-  const { chip, run } = timed('chip', () =>
-    assembleChip({ layout, sheet, file, layoutSha256: '0'.repeat(64) }),
-  );
+  const { chip, run } = timed('chip', () => assembleChip({ layout, sheet, file }));
   const network = timed('network', () => buildNetwork(chip));
   const flow = timed('solve', () => solveFlow(network, run));
   const findings = timed('findings', () => findAll({ chip, run, network, flow }));
   timed('json', () => {
     const report = buildReport({
       tool: { name: 'rillcheck', version: '0' },
-      chip,
-      run,
-      network,
-      flow,
-      findings,
-      layoutFile: file,
+      layout: { file, sha256: '' },
+      sheet: null,
+      cases: [{ name: null, chip, run, network, flow, findings }],
     });
     let length = 0;
     for (const part of writeJson(report.result, 'ports')) length += part.length;

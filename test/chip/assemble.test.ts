@@ -119,7 +119,6 @@ describe('assembleChip', () => {
       layout: layout(culture),
       sheet: sheet.cases[0]!.sheet,
       file: 'c.svg',
-      layoutSha256: '',
     });
     expect(run.ports[0]!.condition).toEqual({ kind: 'flow', flowM3s: 20 / 6e10 });
   });
@@ -173,7 +172,7 @@ describe('assembleChip', () => {
       );
       const sheet = parseRunSheet('depth: 50 um\nchannels: { "c*": { walls: all } }', 'x');
       return countedLooks(layout(drafts), (counted) => {
-        const { chip } = assembleChip({ layout: counted, sheet, file: 'x', layoutSha256: '' });
+        const { chip } = assembleChip({ layout: counted, sheet, file: 'x' });
         expect(chip.channels.length).toBe(count);
       });
     };

@@ -157,7 +157,6 @@ describe('a name that the drawing lacks', () => {
         layout: layOut(readSvg(NAMED, 'c.svg'), 'c.svg'),
         sheet: parseRunSheet(text, 'c.run.yaml').cases[0]!.sheet,
         file: 'c.svg',
-        layoutSha256: '0'.repeat(64),
       });
     expect(inCase(sheet('feed: { flow: 1 uL/min }')).run.ports[0]!.condition.kind).toBe('flow');
     // but the sheet's own names overrule it as ever
@@ -214,7 +213,6 @@ describe('a name of something in the drawing that is not read', () => {
         layout,
         sheet: parseRunSheet(`depth: 50 um\n${sheet}`, 'c.run.yaml'),
         file: 'c.svg',
-        layoutSha256: '0'.repeat(64),
       });
     } catch (error) {
       if (error instanceof Error) return error.message;

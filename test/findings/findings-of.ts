@@ -17,7 +17,7 @@ export function findingsOf(svg: string, sheetText: string | null, file = 'fixtur
 export function contextOf(svg: string, sheetText: string | null, file = 'fixture'): FindingContext {
   const layout = layOut(readSvg(svg, `${file}.svg`), `${file}.svg`);
   const sheet = sheetText === null ? null : parseRunSheet(sheetText, `${file}.run.yaml`);
-  const { chip, run } = assembleChip({ layout, sheet, file: `${file}.svg`, layoutSha256: '0'.repeat(64) });
+  const { chip, run } = assembleChip({ layout, sheet, file: `${file}.svg` });
   const network = buildNetwork(chip);
   return { chip, run, network, flow: solveFlow(network, run) };
 }

@@ -31,7 +31,6 @@ export function chipOf(channels: readonly ChannelSpec[], ports: readonly PortSpe
   }));
   return {
     file: 'test.svg',
-    layoutSha256: '0'.repeat(64),
     unitMm: 1,
     unitReason: 'made by hand',
     widthMm: null,

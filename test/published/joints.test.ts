@@ -79,7 +79,6 @@ async function flowOf(
     layout: layOut(readSvg(svg, file), file),
     sheet: parseRunSheet(sheet, 'joint.run.yaml'),
     file,
-    layoutSha256: '0'.repeat(64),
   });
 }
 
@@ -235,7 +234,6 @@ async function uTurn(aspect: number, gap: number): Promise<Analysis> {
     layout: layOut(readSvg(drawing, 'u.svg'), 'u.svg'),
     sheet: parseRunSheet(sheet, 'u.run.yaml'),
     file: 'u.svg',
-    layoutSha256: '0'.repeat(64),
   });
 }
 

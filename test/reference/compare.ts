@@ -126,7 +126,6 @@ function assembled(svg: string, sheet: string): Assembled {
     layout: layOut(readSvg(svg, 'random.svg'), 'random.svg'),
     sheet: parseRunSheet(sheet, 'random.run.yaml'),
     file: 'random.svg',
-    layoutSha256: '0'.repeat(64),
   });
 }
 

@@ -1,7 +1,6 @@
 import { describe, expect, test } from 'vitest';
 import { writeReachesCsv, writeSegmentsCsv } from '../../src/report/csv.ts';
-import { buildResult } from '../../src/report/result.ts';
-import { sampleInput } from './sample.ts';
+import { sampleResult } from './sample.ts';
 
 /** A reader of RFC 4180, written for this test. */
 function parseCsv(text: string): string[][] {
@@ -31,7 +30,7 @@ function parseCsv(text: string): string[][] {
 
 describe('CSV', () => {
   test('has the JSON keys as heads and the JSON numbers as cells', () => {
-    const result = buildResult(sampleInput());
+    const result = sampleResult();
     const [heads, ...rows] = parseCsv([...writeReachesCsv(result.reaches)].join(''));
     expect(heads).toEqual(Object.keys(result.reaches.at(0)));
     rows.forEach((cells, i) => {
@@ -47,7 +46,7 @@ describe('CSV', () => {
   test.each(['=1+1', '+A1', '-2+3', '@SUM(A1)', '\t=1', ' =1', '\r\n=1', '＝1', '\u200b=1'])(
     'keeps the name %j from running as a formula',
     (name) => {
-      const csv = [...writeReachesCsv(buildResult(sampleInput({ names: { lower: name } })).reaches)].join('');
+      const csv = [...writeReachesCsv(sampleResult({ names: { lower: name } }).reaches)].join('');
       const cell = parseCsv(csv)[4][1];
       expect(cell).toBe(`'${name}`);
     },
@@ -55,12 +54,12 @@ describe('CSV', () => {
 
   test('quotes commas, quotes and line ends', () => {
     const name = 'a,"b"\nc';
-    const csv = [...writeReachesCsv(buildResult(sampleInput({ names: { lower: name } })).reaches)].join('');
+    const csv = [...writeReachesCsv(sampleResult({ names: { lower: name } }).reaches)].join('');
     expect(parseCsv(csv)[4][1]).toBe(name);
   });
 
   test('leaves negative numbers numbers', () => {
-    const csv = [...writeReachesCsv(buildResult(sampleInput({ feedPa: -500 })).reaches)].join('');
+    const csv = [...writeReachesCsv(sampleResult({ feedPa: -500 }).reaches)].join('');
     expect(parseCsv(csv)[1][11]).toMatch(/^-\d/);
   });
 });

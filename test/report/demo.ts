@@ -1,21 +1,13 @@
-import { createHash } from 'node:crypto';
 import { readFileSync } from 'node:fs';
-import { analyse } from '../../src/analyse.ts';
-import { layOut } from '../../src/layout/layout.ts';
-import { buildReport, type Report } from '../../src/report/report.ts';
-import { parseRunSheet } from '../../src/runsheet/parse.ts';
-import { readSvg } from '../../src/svg/read.ts';
+import { checkLayout } from '../../src/check-layout.ts';
+import type { Report } from '../../src/report/report.ts';
 
 /** A report of a layout given as text, through all stages. */
 export async function reportOf(name: string, svg: string, sheet: string | null): Promise<Report> {
-  const file = `${name}.svg`;
-  const analysis = await analyse({
-    layout: layOut(readSvg(svg, file), file),
-    sheet: sheet === null ? null : parseRunSheet(sheet, `${name}.run.yaml`),
-    file,
-    layoutSha256: createHash('sha256').update(svg).digest('hex'),
+  return checkLayout({
+    layout: { name: `${name}.svg`, text: svg },
+    runSheet: sheet === null ? null : { name: `${name}.run.yaml`, text: sheet },
   });
-  return buildReport({ tool: { name: 'rillcheck', version: '0.1.0' }, layoutFile: file, ...analysis });
 }
 
 /** A report of one of the demo layouts. */

@@ -1,17 +1,17 @@
 import * as v from 'valibot';
 import { describe, expect, test } from 'vitest';
 import { type Detail, writeJson } from '../../src/report/json.ts';
-import { buildCasesResult, buildResult, type SingleResult } from '../../src/report/result.ts';
+import type { SingleResult } from '../../src/report/result.ts';
 import { resultJsonSchema } from '../../src/report/result-json-schema.ts';
 import { resultSchema } from '../../src/report/result-schema.ts';
-import { sampleInput } from './sample.ts';
+import { sampleCasesReport, sampleResult } from './sample.ts';
 
 const text = (result: Parameters<typeof writeJson>[0], detail?: Detail): string =>
   [...writeJson(result, detail)].join('');
 
 describe('the JSON document', () => {
   test('has the keys of the contract in their order', () => {
-    const document = JSON.parse(text(buildResult(sampleInput())));
+    const document = JSON.parse(text(sampleResult()));
     expect(Object.keys(document)).toEqual(
       'tool layout run_sheet fluid verdict counts ports nodes reaches segments findings not_run balance'.split(
         ' ',
@@ -40,7 +40,7 @@ describe('the JSON document', () => {
   test.each(['ports', 'reaches', 'segments'] as const)(
     'validates against its own description at detail %s',
     (detail) => {
-      const document = JSON.parse(text(buildResult(sampleInput()), detail));
+      const document = JSON.parse(text(sampleResult(), detail));
       expect(v.safeParse(resultSchema, document).issues).toBeUndefined();
       expect('segments' in document).toBe(detail === 'segments');
       expect('nodes' in document).toBe(detail !== 'ports');
@@ -48,10 +48,7 @@ describe('the JSON document', () => {
   );
 
   test('of cases repeats everything but tool, layout and run sheet, and holds when one case holds', () => {
-    const result = buildCasesResult([
-      { name: 'seed', input: sampleInput({ findings: [] }) },
-      { name: 'culture', input: sampleInput() },
-    ]);
+    const result = sampleCasesReport().result;
     const document = JSON.parse(text(result));
     expect(Object.keys(document)).toEqual(['tool', 'layout', 'run_sheet', 'verdict', 'cases']);
     expect(Object.keys(document.cases[0]).slice(0, 3)).toEqual(['case', 'fluid', 'verdict']);
@@ -64,17 +61,17 @@ describe('the JSON document', () => {
   });
 
   test('has null where a number does not exist, and no −0', () => {
-    const atRest = JSON.parse(text(buildResult(sampleInput({ feedPa: 0 }))));
+    const atRest = JSON.parse(text(sampleResult({ feedPa: 0 })));
     const [inlet] = atRest.reaches;
     expect([inlet.residence_time_s, inlet.fastest_time_s, inlet.dean]).toEqual([null, null, null]);
     expect(inlet.volume_m3).toBeGreaterThan(0);
-    expect(text(buildResult(sampleInput({ feedPa: -0 })))).not.toMatch(/[:[,]-0[,\]}]/);
-    expect(JSON.parse(text(buildResult(sampleInput()))).reaches[4].residence_time_s).toBeNull();
+    expect(text(sampleResult({ feedPa: -0 }))).not.toMatch(/[:[,]-0[,\]}]/);
+    expect(JSON.parse(text(sampleResult())).reaches[4].residence_time_s).toBeNull();
   });
 
   test('refuses a number that is not finite and names its key', () => {
     const result: SingleResult = {
-      ...buildResult(sampleInput()),
+      ...sampleResult(),
       balance: { worst_imbalance: Number.NaN, worst_node: null },
     };
     expect(() => text(result)).toThrow(
@@ -84,15 +81,15 @@ describe('the JSON document', () => {
 
   test('writes −0 as 0', () => {
     const result: SingleResult = {
-      ...buildResult(sampleInput()),
+      ...sampleResult(),
       balance: { worst_imbalance: -0, worst_node: null },
     };
     expect(text(result)).toContain('"worst_imbalance":0,');
   });
 
   test('is the same text twice and ends with one line end', () => {
-    const once = text(buildResult(sampleInput()));
-    expect(text(buildResult(sampleInput()))).toBe(once);
+    const once = text(sampleResult());
+    expect(text(sampleResult())).toBe(once);
     expect(once.endsWith('}\n')).toBe(true);
   });
 

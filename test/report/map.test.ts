@@ -3,9 +3,9 @@ import { colourScale, legendTicks, PALETTE } from '../../src/report/colour-scale
 import { drawMap, type MapDrawing, type MapOptions, mapNotes, shortName } from '../../src/report/map.ts';
 import { type Box, chipGeometry, segmentTouchesBox } from '../../src/report/map-geometry.ts';
 import { displayWidth } from '../../src/report/plain-text.ts';
-import { buildReport, type ReportedCase } from '../../src/report/report.ts';
+import type { ReportedCase } from '../../src/report/report.ts';
 import { DEMOS, demoReport } from './demo.ts';
-import { sampleInput } from './sample.ts';
+import { sampleReport } from './sample.ts';
 
 const options: MapOptions = {
   quantity: 'shear',
@@ -54,7 +54,7 @@ describe.each(DEMOS)('the maps of %s', (name) => {
 });
 
 describe('a map', () => {
-  const [one] = buildReport(sampleInput()).cases;
+  const [one] = sampleReport().cases;
 
   test.each([
     [180, 120],
@@ -156,7 +156,7 @@ describe('a map', () => {
   });
 
   test('names a port by its first letters where its whole name finds no room', () => {
-    const [long] = buildReport(sampleInput({ names: { feed: 'a-name-as-long-as-it-gets-in-here' } })).cases;
+    const [long] = sampleReport({ names: { feed: 'a-name-as-long-as-it-gets-in-here' } }).cases;
     const texts = draw(long, { widthMm: 60, quantity: 'pressure' })
       .labels.filter(({ kind }) => kind === 'port')
       .map(({ text }) => text);
@@ -180,7 +180,7 @@ describe('a map', () => {
   });
 
   test('is painted grey where there is no value', () => {
-    const [still] = buildReport(sampleInput({ feedPa: 0 })).cases;
+    const [still] = sampleReport({ feedPa: 0 }).cases;
     const drawing = draw(still, { quantity: 'residence' });
     expect(drawing.legend).toBeNull();
     expect(new Set(drawing.reaches.flatMap(({ strokes }) => strokes.map(({ colour }) => colour)))).toEqual(

@@ -1,11 +1,11 @@
 import { describe, expect, test } from 'vitest';
 import { writePdf } from '../../src/report/pdf/document.ts';
 import { glyphCoverage } from '../../src/report/pdf/glyph-coverage.ts';
-import { buildCasesReport, buildReport, type Report } from '../../src/report/report.ts';
+import type { Report } from '../../src/report/report.ts';
 import { DEMOS, demoReport, reportOf } from './demo.ts';
 import { fonts } from './fonts.ts';
 import { outside, overlaps, type PdfPage, type PdfText, type ReadPdf, readPdf } from './read-pdf.ts';
-import { sampleInput } from './sample.ts';
+import { sampleCasesReport, sampleReport } from './sample.ts';
 
 const date = new Date('2026-05-04T08:00:00Z');
 const write = (report: Report, paper: 'a4' | 'letter' = 'a4'): Promise<Uint8Array> =>
@@ -18,12 +18,10 @@ const documents = new Map<string, Promise<{ report: Report; pdf: ReadPdf }>>();
 function documentOf(name: string): Promise<{ report: Report; pdf: ReadPdf }> {
   let made = documents.get(name);
   if (made === undefined) {
-    made = (name === 'sample' ? Promise.resolve(buildReport(sampleInput())) : demoReport(name)).then(
-      async (report) => ({
-        report,
-        pdf: await read(report),
-      }),
-    );
+    made = (name === 'sample' ? Promise.resolve(sampleReport()) : demoReport(name)).then(async (report) => ({
+      report,
+      pdf: await read(report),
+    }));
     documents.set(name, made);
   }
   return made;
@@ -41,9 +39,9 @@ function expectTidy(pdf: ReadPdf): void {
 
 describe('the PDF', () => {
   test('is the same bytes for the same report, and other bytes for another date', async () => {
-    const report = buildReport(sampleInput());
+    const report = sampleReport();
     const once = await write(report);
-    expect(Buffer.compare(Buffer.from(once), Buffer.from(await write(buildReport(sampleInput()))))).toBe(0);
+    expect(Buffer.compare(Buffer.from(once), Buffer.from(await write(sampleReport())))).toBe(0);
     const later = await writePdf(report, { fonts, paper: 'a4', date: new Date('2026-05-05T08:00:00Z') });
     expect(Buffer.compare(Buffer.from(once), Buffer.from(later))).not.toBe(0);
   });
@@ -144,12 +142,7 @@ describe('the PDF', () => {
   });
 
   test('shows each case under a bookmark of its own', async () => {
-    const pdf = await read(
-      buildCasesReport([
-        { name: 'seed', input: sampleInput({ findings: [] }) },
-        { name: 'culture', input: sampleInput() },
-      ]),
-    );
+    const pdf = await read(sampleCasesReport());
     expect(pdf.bookmarks.filter((title) => title.startsWith('Case '))).toEqual([
       'Case seed: verdict',
       'Case culture: verdict',
@@ -166,20 +159,20 @@ describe('the PDF', () => {
   test.each(['a4', 'letter'] as const)(
     'keeps every text inside the page and off every other on %s',
     async (paper) => {
-      const pdf = await read(buildReport(sampleInput()), paper);
+      const pdf = await read(sampleReport(), paper);
       expect(Math.round(pdf.pages[0].width)).toBe(paper === 'a4' ? 595 : 612);
       expectTidy(pdf);
     },
   );
 
   test('without a run sheet says so', async () => {
-    const pdf = await read(buildReport(sampleInput({ bare: true })));
+    const pdf = await read(sampleReport({ bare: true }));
     expect(pageText(pdf.pages[0])).toContain('none: geometry rules only');
     expectTidy(pdf);
   });
 
   test('shows – and not a wrong number where the chip is at rest', async () => {
-    const pdf = await read(buildReport(sampleInput({ feedPa: 0 })));
+    const pdf = await read(sampleReport({ feedPa: 0 }));
     expect(allText(pdf)).not.toMatch(/NaN|Infinity|undefined|null/);
     expectTidy(pdf);
   });
@@ -191,7 +184,7 @@ describe('the PDF', () => {
       lower: 'ה'.repeat(20) + 'مرحبا',
       title: 'T'.repeat(200),
     };
-    const pdf = await read(buildReport(sampleInput({ names })));
+    const pdf = await read(sampleReport({ names }));
     const text = allText(pdf);
     expect(text).toContain('<script>alert(1)</script>');
     expect(text).toContain('αβγ-λ [U+1F9EA] evil');
@@ -202,7 +195,7 @@ describe('the PDF', () => {
 
   test('words of a right-to-left name read back in the order they are written', async () => {
     // a reader orders text by where it stands, so words set the wrong way round come back swapped
-    const pdf = await read(buildReport(sampleInput({ names: { title: 'p קצר ארוך end' } })));
+    const pdf = await read(sampleReport({ names: { title: 'p קצר ארוך end' } }));
     expect(pageText(pdf.pages[0])).toContain('קצר ארוך');
   });
 

@@ -1,9 +1,9 @@
 import { describe, expect, test } from 'vitest';
 import { buildResult } from '../../src/report/result.ts';
-import { sampleInput } from './sample.ts';
+import { sampleCase, sampleInput, sampleResult } from './sample.ts';
 
 describe('the result of a case', () => {
-  const result = buildResult(sampleInput());
+  const result = sampleResult();
   const reaches = [...result.reaches];
 
   test('balances: flow times resistance is the pressure drop on every reach, and segments add up to their reach', () => {
@@ -66,18 +66,19 @@ describe('the result of a case', () => {
   });
 
   test('makes rows only when asked', () => {
-    const input = sampleInput();
+    const one = sampleCase();
     const looked = { nodeX: 0, reachFrom: 0, segmentX1: 0 };
-    const network = { ...input.network };
+    const network = { ...one.network };
     for (const name of ['nodeX', 'reachFrom', 'segmentX1'] as const) {
       Object.defineProperty(network, name, {
         get: () => {
           looked[name]++;
-          return input.network[name];
+          return one.network[name];
         },
       });
     }
-    const lazy = buildResult({ ...input, network });
+    const lazy = buildResult(sampleInput({ ...one, network }));
+    if ('cases' in lazy) throw new TypeError('it has no cases');
     expect(looked).toEqual({ nodeX: 0, reachFrom: 0, segmentX1: 0 });
     lazy.segments.at(0);
     expect(looked).toEqual({ nodeX: 0, reachFrom: 0, segmentX1: 1 });

@@ -4,7 +4,8 @@ import type { Network, NetworkTrace } from '../../src/network/types.ts';
 import { resistancePerLength } from '../../src/physics/duct.ts';
 import { waterDensity, waterViscosity } from '../../src/physics/fluid.ts';
 import { tubeResistance } from '../../src/physics/tube.ts';
-import type { ResultInput } from '../../src/report/result.ts';
+import { buildReport, type Report } from '../../src/report/report.ts';
+import type { CaseInput, ReportInput, SingleResult } from '../../src/report/result.ts';
 import type {
   ChannelEntry,
   PortCondition,
@@ -40,21 +41,51 @@ export interface SampleOptions {
 const TEMPERATURE_K = 310.15;
 const DEPTH_MM = 0.12;
 
-export function sampleInput(options: SampleOptions = {}): ResultInput {
+/** The sample chip as one case; without a name it stands alone. */
+export function sampleCase(options: SampleOptions = {}, name: string | null = null): CaseInput {
   const names = { ...PLAIN, ...options.names };
   const chip = sampleChip(names, options);
   const run = sampleRun(names, options);
   const network = sampleNetwork(chip);
   const flow = sampleFlow(network, options.feedPa ?? 1_000);
   return {
-    tool: { name: 'rillcheck', version: '0.1.0' },
+    name,
     chip,
     run,
     network,
     flow,
     findings: findingReport(options.findings ?? sampleFindings(names)),
-    layoutFile: chip.file,
   };
+}
+
+/** What a report of cases is built from. */
+export function sampleInput(...cases: readonly CaseInput[]): ReportInput {
+  const [{ chip, run }] = cases;
+  const named = cases.flatMap(({ name }) =>
+    name === null || run.sheet === null ? [] : [{ name, sheet: run.sheet }],
+  );
+  return {
+    tool: { name: 'rillcheck', version: '0.1.0' },
+    layout: { file: chip.file, sha256: 'a'.repeat(64) },
+    sheet: run.sheet === null ? null : { file: run.sheet.file, sha256: 'b'.repeat(64), cases: named },
+    cases,
+  };
+}
+
+/** The sample chip's report, without cases. */
+export function sampleReport(options: SampleOptions = {}): Report {
+  return buildReport(sampleInput(sampleCase(options)));
+}
+
+export function sampleResult(options: SampleOptions = {}): SingleResult {
+  const { result } = sampleReport(options);
+  if ('cases' in result) throw new TypeError('a report without cases was asked for');
+  return result;
+}
+
+/** The sample chip under two cases, the first without findings. */
+export function sampleCasesReport(): Report {
+  return buildReport(sampleInput(sampleCase({ findings: [] }, 'seed'), sampleCase({}, 'culture')));
 }
 
 export function sampleFindings(names: SampleNames = PLAIN): Finding[] {
@@ -209,7 +240,6 @@ function sampleChip(names: SampleNames, { bare = false }: SampleOptions): Chip {
   });
   return {
     file: 'sample.svg',
-    layoutSha256: 'a'.repeat(64),
     unitMm: 1,
     unitReason: 'width 76mm over viewBox width 76',
     widthMm: 76,
@@ -292,7 +322,6 @@ function sampleSheet(names: SampleNames, show: ShowUnits): RunSheet {
   return {
     file: 'sample.run.yaml',
     text: RUN_SHEET_TEXT,
-    sha256: 'b'.repeat(64),
     title: names.title,
     drawing: { number: 'C-200', revision: 'B', drawnBy: 'AM' },
     unitMm: null,

@@ -1,13 +1,12 @@
 import { describe, expect, test } from 'vitest';
-import { buildReport } from '../../src/report/report.ts';
 import { escapeXml, svgPicture } from '../../src/report/svg.ts';
 import { readSvg } from '../../src/svg/read.ts';
-import { sampleInput } from './sample.ts';
+import { sampleReport } from './sample.ts';
 
 const picture = (
-  options: Parameters<typeof sampleInput>[0] = {},
+  options: Parameters<typeof sampleReport>[0] = {},
   quantity: 'pressure' | 'shear' | 'flow' | 'residence' = 'shear',
-): string => svgPicture(buildReport(sampleInput(options)).cases[0], { quantity });
+): string => svgPicture(sampleReport(options).cases[0], { quantity });
 
 describe('the SVG picture', () => {
   test.each(['pressure', 'shear', 'flow', 'residence'] as const)(
@@ -22,7 +21,7 @@ describe('the SVG picture', () => {
 
   test('has a title on every reach with its numbers', () => {
     const titles = [...picture().matchAll(/<title>([^<]*)<\/title>/g)].map(([, title]) => title);
-    const { reaches } = buildReport(sampleInput()).cases[0].part;
+    const { reaches } = sampleReport().cases[0].part;
     for (const reach of reaches) {
       const title = titles.find((text) => text.startsWith(`${reach.name} (`));
       expect(title).toContain(`${reach.from} → ${reach.to}`);

@@ -1,14 +1,13 @@
 import { describe, expect, test } from 'vitest';
 import { displayWidth } from '../../src/report/plain-text.ts';
-import { buildCasesReport, buildReport } from '../../src/report/report.ts';
 import { terminalSummary } from '../../src/report/terminal.ts';
-import { sampleInput } from './sample.ts';
+import { sampleCasesReport, sampleReport } from './sample.ts';
 
 const plain = { colour: false, columns: 100, quiet: false };
 
 describe('the terminal summary', () => {
   test('reads at a glance', () => {
-    expect(terminalSummary(buildReport(sampleInput()), plain)).toMatchInlineSnapshot(`
+    expect(terminalSummary(sampleReport(), plain)).toMatchInlineSnapshot(`
       "sample.svg  hold: 1 blocker, 1 caution, 1 accepted, 1 rule not run
 
       port   condition  in the chip  at the supply  flow into chip  in tubing
@@ -36,16 +35,13 @@ describe('the terminal summary', () => {
   });
 
   test('quiet is the verdict with its counts alone', () => {
-    expect(terminalSummary(buildReport(sampleInput()), { ...plain, quiet: true })).toBe(
+    expect(terminalSummary(sampleReport(), { ...plain, quiet: true })).toBe(
       'sample.svg  hold: 1 blocker, 1 caution, 1 accepted, 1 rule not run\n',
     );
   });
 
   test('shows each case and then the verdict over all', () => {
-    const report = buildCasesReport([
-      { name: 'seed', input: sampleInput({ findings: [] }) },
-      { name: 'culture', input: sampleInput() },
-    ]);
+    const report = sampleCasesReport();
     expect(terminalSummary(report, { ...plain, quiet: true })).toBe(
       'sample.svg, case seed  ready: 0 blockers, 0 cautions, 0 accepted, 1 rule not run\n' +
         'sample.svg, case culture  hold: 1 blocker, 1 caution, 1 accepted, 1 rule not run\n' +
@@ -55,7 +51,7 @@ describe('the terminal summary', () => {
 
   test.each([40, 60, 100, 240])('stays within the terminal and 100 columns at %i columns', (columns) => {
     const long = { lower: '長い名前のチャネル'.repeat(12), feed: '🧪'.repeat(60) };
-    for (const line of terminalSummary(buildReport(sampleInput({ names: long })), {
+    for (const line of terminalSummary(sampleReport({ names: long }), {
       ...plain,
       columns,
     }).split('\n')) {
@@ -64,7 +60,7 @@ describe('the terminal summary', () => {
   });
 
   test('says in words all that it says in colour', () => {
-    const report = buildReport(sampleInput());
+    const report = sampleReport();
     const coloured = terminalSummary(report, { ...plain, colour: true });
     expect(coloured).toContain('\u001b[');
     expect(coloured.replace(/\u001b\[\d+m/g, '')).toBe(terminalSummary(report, plain));
@@ -72,14 +68,14 @@ describe('the terminal summary', () => {
 
   test('lets no control character or bidi mark of a name through', () => {
     const names = { lower: 'a\u001b[31m\u202eb\nc\u0007', feed: '\u2066x\u009b2J' };
-    expect(terminalSummary(buildReport(sampleInput({ names })), plain)).not.toMatch(
+    expect(terminalSummary(sampleReport({ names }), plain)).not.toMatch(
       /[\u0000-\u0009\u000b-\u001f\u007f-\u009f\u202a-\u202e\u2066-\u2069]/,
     );
   });
 
   test('uses the units that the run sheet asks for', () => {
     const shown = terminalSummary(
-      buildReport(sampleInput({ show: { pressure: 'mbar', wall_shear: 'dyn/cm^2', flow: 'uL/h' } })),
+      sampleReport({ show: { pressure: 'mbar', wall_shear: 'dyn/cm^2', flow: 'uL/h' } }),
       plain,
     );
     expect(shown).toContain('mbar');

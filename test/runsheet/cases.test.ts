@@ -17,7 +17,6 @@ describe('cases', () => {
     expect(seed.channels['lane-*']!.wallShear).toEqual({ min: 0.05, max: 0.1, over: 0.8 });
     expect(seed.title).toBe('Four-lane culture chip');
     expect(seed.cases).toEqual([]);
-    expect(seed.sha256).toBe(sheet.sha256);
     expect(sheet.ports.feed!.condition.kind).toBe('pressure');
   });
 

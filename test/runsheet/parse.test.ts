@@ -28,7 +28,6 @@ describe('parseRunSheet', () => {
       depthM: 50e-6,
       show: { flow: 'uL/min', pressure: 'mbar', wall_shear: 'dyn/cm^2' },
     });
-    expect(sheet.sha256).toMatch(/^[0-9a-f]{64}$/);
     expect(sheet.text).toBe(FULL_SHEET);
   });
 

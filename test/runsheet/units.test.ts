@@ -1,7 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import {
   describeQuantity,
-  formatQuantity,
   parseQuantity,
   type Quantity,
   QuantityError,
@@ -169,14 +168,11 @@ describe('parseQuantity', () => {
   });
 });
 
-describe('unitFactor and formatQuantity', () => {
+describe('unitFactor', () => {
   it('divide an SI value into the unit shown', () => {
     expect(unitFactor('µL/min', 'flow')).toBe(1 / 6e10);
     expect(unitFactor('mbar', 'pressure')).toBe(100);
     expect(unitFactor('dyn/cm^2', 'wall_shear')).toBe(0.1);
-    expect(formatQuantity(12.34567e-9 / 60, 'µL/min', 'flow')).toBe('12.35 µL/min');
-    expect(formatQuantity(-0, 'kPa', 'pressure')).toBe('0 kPa');
-    expect(formatQuantity(1e-12, 'kPa', 'pressure')).toBe('1e-15 kPa');
   });
 
   it('refuse a unit of something else', () => {
@@ -186,15 +182,18 @@ describe('unitFactor and formatQuantity', () => {
     expect(() => unitFactor('uL/minn', 'flow')).toThrow('did you mean "uL/min"?');
   });
 
-  it('read back what they print', () => {
+  it('is what one of the unit is read as', () => {
     for (const [quantity, unit] of [
       ['flow', 'uL/h'],
       ['pressure', 'psi'],
       ['wall_shear', 'dyn/cm²'],
       ['time', 'min'],
     ] as const) {
-      for (const value of [1.234e-12, 0.5, 98760]) {
-        expect(parseQuantity(formatQuantity(value, unit, quantity), quantity) / value).toBeCloseTo(1, 3);
+      for (const value of [1.234e-6, 0.5, 98760]) {
+        expect(parseQuantity(`${value} ${unit}`, quantity) / unitFactor(unit, quantity) / value).toBeCloseTo(
+          1,
+          12,
+        );
       }
     }
   });

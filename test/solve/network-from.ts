@@ -11,7 +11,6 @@ export function networkFrom(svg: string, sheet: string): RunNetwork {
     layout: layOut(readSvg(svg, 'chip.svg'), 'chip.svg'),
     sheet: parseRunSheet(sheet, 'chip.run.yaml'),
     file: 'chip.svg',
-    layoutSha256: '0'.repeat(64),
   });
   return { network: buildNetwork(chip), run };
 }

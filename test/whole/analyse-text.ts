@@ -11,7 +11,6 @@ export async function analyseText(svg: string, sheet: string | null): Promise<An
     layout: layOut(readSvg(svg, file), file),
     sheet: sheet === null ? null : parseRunSheet(sheet, 'test.run.yaml'),
     file,
-    layoutSha256: '0'.repeat(64),
   });
 }
 

@@ -11,7 +11,6 @@ const { chip, run } = assembleChip({
   layout: layOut(readSvg(text('culture.svg'), 'culture.svg'), 'culture.svg'),
   sheet: parseRunSheet(text('culture.run.yaml'), 'culture.run.yaml'),
   file: 'culture.svg',
-  layoutSha256: '0'.repeat(64),
 });
 const network = buildNetwork(chip);
 

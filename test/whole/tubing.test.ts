@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { analyse } from '../../src/analyse.ts';
+import { checkLayout } from '../../src/check-layout.ts';
 import { layOut } from '../../src/layout/layout.ts';
-import { buildResult } from '../../src/report/result.ts';
 import { parseRunSheet } from '../../src/runsheet/parse.ts';
 import { readSvg } from '../../src/svg/read.ts';
 import { analyseText, portFlows } from './analyse-text.ts';
@@ -34,15 +34,13 @@ describe('tubing of several pieces', () => {
   });
 
   it('holds what its pieces hold together, and takes the time that they take one after the other', async () => {
-    const layout = layOut(readSvg(CHIP, 't.svg'), 't.svg');
-    const { chip, run, network, flow, findings } = await analyse({
-      layout,
-      sheet: parseRunSheet(sheet(LIST), 't.run.yaml'),
-      file: 't.svg',
-      layoutSha256: '0'.repeat(64),
-    });
-    const tool = { name: 'test', version: '0' };
-    const [row, other] = buildResult({ tool, chip, run, network, flow, findings, layoutFile: 't.svg' }).ports;
+    const [{ part }] = (
+      await checkLayout({
+        layout: { name: 't.svg', text: CHIP },
+        runSheet: { name: 't.run.yaml', text: sheet(LIST) },
+      })
+    ).cases;
+    const [row, other] = part.ports;
     const volume = (Math.PI / 4) * (0.5e-3 ** 2 * 0.3 + 50e-6 ** 2 * 0.08 + 0.1e-3 ** 2 * 0.05);
     expect(row.tubing_volume_m3! / volume).toBeCloseTo(1, 12);
     expect(row.tubing_time_s! / (volume / row.flow_m3_s!)).toBeCloseTo(1, 12);
@@ -54,10 +52,10 @@ describe('tubing of several pieces', () => {
     const text = `${sheet(LIST)}cases: { ${Object.entries(conditions)
       .map(([name, port]) => `${name}: { ports: { in: ${port}, out: { head: 20 mm } } }`)
       .join(', ')} }`;
+    const layout = layOut(readSvg(CHIP, 't.svg'), 't.svg');
     for (const { name, sheet: one } of parseRunSheet(text, 't.run.yaml').cases) {
       expect(one.ports.in!.tubing.length, name).toBe(name === 'bare' ? 0 : 3);
-      const layout = layOut(readSvg(CHIP, 't.svg'), 't.svg');
-      const { flow } = await analyse({ layout, sheet: one, file: 't.svg', layoutSha256: '0'.repeat(64) });
+      const { flow } = await analyse({ layout, sheet: one, file: 't.svg' });
       expect(flow.tubingResistance[0]! > 0, name).toBe(name !== 'bare');
     }
   });

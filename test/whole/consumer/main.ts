@@ -20,7 +20,6 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
     layout,
     sheet,
     file: 'chip.svg',
-    layoutSha256: '0'.repeat(64),
   };
   const assembled = rillcheck.assembleChip(input);
   const chip: Known<rillcheck.Chip> = assembled.chip;
@@ -60,7 +59,7 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
   const shares: Known<rillcheck.JointShares> = analysis.jointShares;
   const settings: Known<rillcheck.FoundSettings> = rillcheck.findSettings({ network, run });
   const targets: readonly Known<rillcheck.FoundTarget>[] = settings.targets;
-  const pumped: Known<rillcheck.Analysis> = (await rillcheck.analysePump(input)).analysis;
+  const pumped: Known<rillcheck.Analysis> = await rillcheck.analyse({ ...input, pump: true });
 
   const tolerances: Known<rillcheck.Tolerances> | null = sheet.tolerances;
   if (tolerances === null) throw new Error('the run sheet of this example has tolerances');
@@ -68,13 +67,23 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
   const pace: Known<rillcheck.Pace> = { due: () => false, rest: async () => 'go on' };
   const spread: Known<rillcheck.Spread> = await rillcheck.spreadOf({ network, run }, tolerances, draws, pace);
 
-  const result: Known<rillcheck.ResultInput> = {
-    ...analysis,
+  const computed: Known<rillcheck.CaseInput> = { name: 'seed', ...analysis };
+  const reportInput: Known<rillcheck.ReportInput> = {
     tool: { name: 'rillcheck', version: rillcheck.VERSION },
-    layoutFile: 'chip.svg',
+    layout: { file: 'chip.svg', sha256: '0'.repeat(64) },
+    sheet: null,
+    cases: [computed],
   };
-  const report: Known<rillcheck.Report> = rillcheck.buildReport(result);
-  const inCases: Known<rillcheck.Report> = rillcheck.buildCasesReport([{ name: 'seed', input: result }]);
+  const inCases: Known<rillcheck.Report> = rillcheck.buildReport(reportInput);
+  const source: Known<rillcheck.SourceFile> = { name: 'chip.svg', text: LAYOUT };
+  const files: Known<rillcheck.LayoutFiles> = {
+    layout: source,
+    runSheet: { name: 'chip.run.yaml', text: SHEET },
+  };
+  const checked: Known<rillcheck.CheckLayoutOptions> = { pump: true, spread: draws };
+  const report: Known<rillcheck.Report> = await rillcheck.checkLayout(files, checked);
+  const paper: Known<rillcheck.PdfFileOptions> = { paper: 'letter', date: new Date(0) };
+  const pdf: Uint8Array = await rillcheck.writePdf(report, paper);
   const [one]: readonly Known<rillcheck.ReportedCase>[] = report.cases;
   if (one === undefined) throw new Error('a report has a case');
   useRows(report.result, one.part);
@@ -99,13 +108,27 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
   const duct: Known<rillcheck.SectionState> = rillcheck.computeSection(section);
   const form: Known<rillcheck.DuctForm> = rillcheck.ductForm(5e-4, 5e-5);
 
-  void [edge, limits, fluid, mixture, faults, ports, conditions, layers, kinds, round, parts, own, severities];
+  void [
+    edge,
+    limits,
+    fluid,
+    mixture,
+    faults,
+    ports,
+    conditions,
+    layers,
+    kinds,
+    round,
+    parts,
+    own,
+    severities,
+  ];
   void [shares, targets, pumped, items, form, duct];
   const texts = [draft, json, reaches, segments, rillcheck.svgPicture(one, picture)];
   return [
     rillcheck.terminalSummary(report, terminal).trim(),
     `${channels.length} channels, ${stages.length} stages, ${spread.draws} draws`,
-    texts.every((text) => text.length > 100) ? 'all written' : 'something is missing',
+    texts.every((text) => text.length > 100) && pdf.length > 10_000 ? 'all written' : 'something is missing',
   ].join('\n');
 }
 
