@@ -1,10 +1,8 @@
 import type { Channel } from '../chip/types.ts';
 import type { Network } from '../network/types.ts';
-import type { Line } from './closest.ts';
+import type { Line, Place } from './closest.ts';
 
-export interface DirectedPlace {
-  readonly xMm: number;
-  readonly yMm: number;
+export interface DirectedPlace extends Place {
   /** Unit vector along the drawn direction. */
   readonly ux: number;
   readonly uy: number;

@@ -1,5 +1,11 @@
 import { crossingParameter, nearestParameter } from '../geometry/segment.ts';
 
+/** A point of the drawing, mm. */
+export interface Place {
+  readonly xMm: number;
+  readonly yMm: number;
+}
+
 /** Two points, one on each of two shapes, and how far they lie apart (mm). */
 export interface Closest {
   readonly distanceMm: number;
@@ -103,7 +109,7 @@ function band(w0: number, dw: number, low: number, high: number, span: number): 
   return [Math.min(t1, t2), Math.max(t1, t2)];
 }
 
-export function middleOf([x1, y1, x2, y2]: Line) {
+export function middleOf([x1, y1, x2, y2]: Line): Place {
   return { xMm: (x1 + x2) / 2, yMm: (y1 + y2) / 2 };
 }
 

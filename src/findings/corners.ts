@@ -1,6 +1,7 @@
 import type { Sourced } from '../chip/types.ts';
 import type { Network } from '../network/types.ts';
 import { tightBends } from './bends.ts';
+import type { Place } from './closest.ts';
 import type { FindingContext } from './context.ts';
 import { notches } from './notches.ts';
 import { channelPaths, joinsOf, pointOn, sidePoint } from './paths.ts';
@@ -19,7 +20,8 @@ export const cornerRules: readonly Rule[] = [
   rule('tight-bend', tightBends),
 ];
 
-function toSharpCorner({ angleRad, xMm, yMm, names }: Corner, limit: Sourced<number>): Finding {
+function toSharpCorner(corner: Corner, limit: Sourced<number>): Finding {
+  const { angleRad, names } = corner;
   const [one, two] = names;
   const more = degreesText(limit.value - angleRad);
   const [between, fix] =
@@ -29,16 +31,14 @@ function toSharpCorner({ angleRad, xMm, yMm, names }: Corner, limit: Sourced<num
   return toFinding('sharp-corner', 'caution', {
     message: `${between} at an inside angle of ${degreesText(angleRad)}; min_corner_angle is ${limitText(degreesText(limit.value), limit)}: the material between runs to a point`,
     fix,
-    at: { xMm, yMm },
+    at: corner,
     names,
     measure: { value: angleRad, limit: limit.value, unit: 'rad' },
   });
 }
 
-interface Corner {
+interface Corner extends Place {
   readonly angleRad: number;
-  readonly xMm: number;
-  readonly yMm: number;
   readonly names: readonly string[];
 }
 

@@ -68,17 +68,13 @@ function stateOf(
   const given = ports.map((port) => drives[port]);
   const held = new Set(given.flatMap((drive) => (drive.kind === 'pressure' ? drive.pressurePa : [])));
   const hasFlow = given.some(({ kind }) => kind === 'flow');
-  const kind =
-    ports.length === 0
-      ? 'stray'
-      : holes.size === 1
-        ? 'alone'
-        : held.size === 0
-          ? 'unheld'
-          : held.size === 1 && !hasFlow
-            ? 'undriven'
-            : 'live';
-  return { part, ports, kind, hasFlow, held, planes: planesOf(context, part) };
+  return { part, ports, kind: kindOf(), hasFlow, held, planes: planesOf(context, part) };
+
+  function kindOf(): PartState['kind'] {
+    if (holes.size < 2) return holes.size === 0 ? 'stray' : 'alone';
+    if (held.size === 0) return 'unheld';
+    return held.size === 1 && !hasFlow ? 'undriven' : 'live';
+  }
 }
 
 function planesOf(context: FindingContext, part: number): Set<number> {

@@ -4,19 +4,26 @@ import type { ChipEdge } from '../chip/types.ts';
 import { type BoxIndex, indexBoxes } from '../geometry/box-index.ts';
 import { type Curve, FINE_MM, finePieces } from '../geometry/curve.ts';
 import { segmentDistance } from '../geometry/segment.ts';
-import { boxRound, type Closest, closestPoints, type Line, nearer, pointLine } from './closest.ts';
+import {
+  boxRound,
+  type Closest,
+  closestPoints,
+  type Line,
+  middleOf,
+  nearer,
+  type Place,
+  pointLine,
+} from './closest.ts';
 import type { FindingContext } from './context.ts';
 import { lineOf, paintedParts } from './painted.ts';
 import { isBelow } from './rule.ts';
 
 /** A channel or well beyond the chip edge, or nearer to it than the margin. */
-export interface EdgeFault {
+export interface EdgeFault extends Place {
   readonly name: string;
   readonly isHole: boolean;
   /** From the painted area or rim to the chip edge, mm; below 0 by how far it lies beyond. */
   readonly gapMm: number;
-  readonly xMm: number;
-  readonly yMm: number;
   readonly mark: Line;
 }
 
@@ -41,7 +48,7 @@ export function findEdgeFaults(context: FindingContext, edge: ChipEdge, marginMm
 
   for (const port of chip.ports) {
     const near = measure(outline, pointLine(port.xMm, port.yMm), port.radiusMm);
-    if (isFault(near.gapMm + edgeSlackMm, marginMm)) faults.push(toFault(port.name, true, near));
+    if (isFault(near.gapMm + edgeSlackMm, marginMm)) faults.push({ ...near, name: port.name, isHole: true });
   }
 
   for (let c = 0; c < pieces.centrelineCount; c++) {
@@ -62,11 +69,11 @@ export function findEdgeFaults(context: FindingContext, edge: ChipEdge, marginMm
       if (near !== null && isAtFault) worst = worst === null ? near : worseOf(worst, near);
       // Two pieces that come near the edge and meet far from it are two places.
       if (worst !== null && !(isAtFault && (!inside || isFault(gapAtEnd(i) + slackOf(i), marginMm)))) {
-        faults.push(toFault(name, false, worst));
+        faults.push({ ...worst, name, isHole: false });
         worst = null;
       }
     }
-    if (worst !== null) faults.push(toFault(name, false, worst));
+    if (worst !== null) faults.push({ ...worst, name, isHole: false });
   }
   return faults;
 
@@ -76,9 +83,8 @@ export function findEdgeFaults(context: FindingContext, edge: ChipEdge, marginMm
     const start = beyond(outline, pieces.x1[i], pieces.y1[i], half);
     const end = beyond(outline, pieces.x2[i], pieces.y2[i], half);
     if (Math.abs(start.gapMm - end.gapMm) > ROUNDING_MM) return worseOf(start, end);
-    const x = (pieces.x1[i] + pieces.x2[i]) / 2;
-    const y = (pieces.y1[i] + pieces.y2[i]) / 2;
-    return worseOf(start, { ...beyond(outline, x, y, half), isEven: true });
+    const { xMm, yMm } = middleOf(lineOf(pieces, i));
+    return worseOf(start, { ...beyond(outline, xMm, yMm, half), isEven: true });
   }
 
   function gapAtEnd(i: number): number {
@@ -99,15 +105,11 @@ function worseOf(one: Near, two: Near): Near {
   return two.gapMm < one.gapMm ? two : one;
 }
 
-function toFault(name: string, isHole: boolean, { gapMm, xMm, yMm, mark }: Near): EdgeFault {
-  return { name, isHole, gapMm, xMm, yMm, mark };
-}
-
 function isFault(gapMm: number, marginMm: number): boolean {
   return marginMm > 0 ? isBelow(gapMm, marginMm) : gapMm < -ROUNDING_MM;
 }
 
-interface Near extends Pick<EdgeFault, 'gapMm' | 'xMm' | 'yMm' | 'mark'> {
+interface Near extends Omit<EdgeFault, 'name' | 'isHole'> {
   /** The distance is the same along the whole line; the place is its middle. */
   readonly isEven: boolean;
 }

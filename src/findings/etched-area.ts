@@ -1,5 +1,4 @@
 import { piecesNear } from '../geometry/near.ts';
-import { placeOn } from '../geometry/on-piece.ts';
 import {
   COARSE_SHARE,
   commonOutline,
@@ -10,17 +9,15 @@ import {
   pieceOutline,
   type Rounds,
 } from '../geometry/outline.ts';
-import { directionOf, neighbourPiece, type Pieces } from '../geometry/pieces.ts';
+import { neighbourPiece, type Pieces } from '../geometry/pieces.ts';
 import { isInPieceStrip } from '../geometry/strip.ts';
 import { lieAlong } from '../network/meetings.ts';
-import { closestPoints, type Line } from './closest.ts';
+import type { Line } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
-import { endMeets, hasPlaceOn } from './meets.ts';
+import { hasPlaceOn } from './meets.ts';
 import { portsNear } from './near-ports.ts';
-import { lineOf } from './painted.ts';
-import { channelPaths } from './paths.ts';
+import { alongPiece, isLeftOutOn, meetInNode } from './shared-nodes.ts';
 import { coveredLength, extentOf, type Facing, groupStretches, type Wall } from './stretches.ts';
-import { endPlace } from './tips.ts';
 
 /**
  * One etched area is one network: where two strips of a plane overlap, or two stretches of one more than four widths
@@ -96,13 +93,14 @@ class Overlaps {
       if (pairDistance[k] === 0 && !lieAlong(pieces, i, j)) continue;
       // The strip of a piece lies within half a width of it, whatever its ends.
       if (pairDistance[k] > pieces.half[i] + pieces.half[j]) continue;
-      if (isOneStretch(pieces, i, j) || this.meetWhereNearest(i, j) || this.meetAnywhere(i, j)) continue;
+      if (isOneStretch(pieces, i, j) || meetInNode(this.context, i, j)) continue;
       const common = overlapOf(pieces, i, j);
       if (common === null) {
         this.open.set(k, null);
         continue;
       }
-      if (this.isLeftOutWhole(i, j) || this.isLeftOutWhole(j, i) || this.meetInWell(i, j, common)) continue;
+      if (isLeftOutOn(this.context, i, j) || isLeftOutOn(this.context, j, i)) continue;
+      if (this.meetInWell(i, j, common)) continue;
       this.open.set(k, { i, j, common, joined: false });
     }
     return this.all();
@@ -199,106 +197,21 @@ class Overlaps {
     return -1;
   }
 
-  /** Whether a node of both lies where the two pieces are nearest: at nearly every crossing and branch. */
-  private meetWhereNearest(i: number, j: number): boolean {
-    const { pieces } = this;
-    const { x1, y1, x2, y2 } = closestPoints(lineOf(pieces, i), lineOf(pieces, j));
-    const s = pieces.start[i] + Math.hypot(x1 - pieces.x1[i], y1 - pieces.y1[i]);
-    const t = pieces.start[j] + Math.hypot(x2 - pieces.x1[j], y2 - pieces.y1[j]);
-    return this.meetBetween(i, s, s, j) || this.meetBetween(j, t, t, i);
-  }
-
-  private meetAnywhere(i: number, j: number): boolean {
-    const { start, length } = this.pieces;
-    return (
-      this.meetBetween(i, start[i], start[i] + length[i], j) ||
-      this.meetBetween(j, start[j], start[j] + length[j], i)
-    );
-  }
-
-  /**
-   * Whether a node on piece i between two positions lies inside the strip of piece j and has a place on j's centreline
-   * near there. An end that was carried on stands where it was drawn.
-   */
-  private meetBetween(i: number, from: number, to: number, j: number): boolean {
-    const { pieces, slackMm } = this;
-    const { arcFrom, arcTo, firstArc } = this.context.network.trace;
-    const c = pieces.centreline[i];
-    const low = from <= slackMm ? Number.NEGATIVE_INFINITY : from - slackMm;
-    const high = to >= pieces.centrelineLength[c] - slackMm ? Number.POSITIVE_INFINITY : to + slackMm;
-    for (let a = this.firstArcUpTo(c, low); a < firstArc[c + 1] && arcFrom[a] <= high; a++) {
-      if (arcFrom[a] >= low && this.meetAtSide(2 * a, arcFrom[a], i, j)) return true;
-      if (arcTo[a] <= high && this.meetAtSide(2 * a + 1, arcTo[a], i, j)) return true;
-    }
-    return false;
-  }
-
-  /** The first arc of a centreline that reaches a position. */
-  private firstArcUpTo(c: number, s: number): number {
-    const { firstArc, arcTo } = this.context.network.trace;
-    let low = firstArc[c];
-    let high = firstArc[c + 1];
-    while (low < high) {
-      const middle = (low + high) >> 1;
-      if (arcTo[middle] < s) low = middle + 1;
-      else high = middle;
-    }
-    return low;
-  }
-
-  private meetAtSide(side: number, s: number, i: number, j: number): boolean {
-    const { pieces, slackMm } = this;
-    const { arcFrom, arcTo, firstArc } = this.context.network.trace;
-    const along = Math.min(pieces.centrelineLength[pieces.centreline[i]], Math.max(0, s)) - pieces.start[i];
-    if (along < -slackMm || along > pieces.length[i] + slackMm) return false;
-    const { x, y } = placeOn(pieces, i, along / pieces.length[i]);
-    if (!isInPieceStrip(pieces, j, x, y, slackMm, null)) return false;
-    const c = pieces.centreline[j];
-    const t = pieces.start[j] + alongPiece(pieces, j, x, y);
-    const nearMm = 4 * (pieces.half[i] + pieces.half[j]);
-    const node = this.nodeAt(side);
-    for (let a = this.firstArcUpTo(c, t - nearMm); a < firstArc[c + 1] && arcFrom[a] <= t + nearMm; a++) {
-      if (arcFrom[a] >= t - nearMm && 2 * a !== side && this.nodeAt(2 * a) === node) return true;
-      if (arcTo[a] <= t + nearMm && 2 * a + 1 !== side && this.nodeAt(2 * a + 1) === node) return true;
-    }
-    return false;
-  }
-
-  /** Node at an arc's start (even side) or end. Rule 7 takes away nodes where two arcs of one reach meet: a number of their own. */
-  private nodeAt(side: number): number {
-    const { arcNodeFrom, arcNodeTo } = this.context.network.trace;
-    const node = (side & 1) === 0 ? arcNodeFrom[side >> 1] : arcNodeTo[side >> 1];
-    return node >= 0 ? node : channelPaths(this.context).sideVertex[side];
-  }
-
-  /** A stroke that the joining rules left out whole has no node: it is joined where it was to be carried on. */
-  private isLeftOutWhole(i: number, j: number): boolean {
-    const { pieces, slackMm } = this;
-    const { network } = this.context;
-    const { firstArc } = network.trace;
-    const c = pieces.centreline[i];
-    if (firstArc[c + 1] > firstArc[c]) return false;
-    return [2 * c, 2 * c + 1].some((end) => {
-      const { piece, x, y } = endPlace(network, end);
-      return (
-        piece === i &&
-        endMeets(network, end, pieces.centreline[j]) &&
-        isInPieceStrip(pieces, j, x, y, slackMm, null)
-      );
-    });
-  }
-
   private meetInWell(i: number, j: number, common: Outline): boolean {
     const { chip, network } = this.context;
+    const { centreline } = this.pieces;
     const { x, y } = middleOfOutline(common);
     let reach = 0;
     for (let k = 0; k < common.length; k += 2)
       reach = Math.max(reach, Math.hypot(common[k] - x, common[k + 1] - y));
     return portsNear(this.context, x, y, reach + this.slackMm).some((p) => {
       const { xMm, yMm, radiusMm } = chip.ports[p];
-      if (distanceToOutline(common, xMm, yMm) > radiusMm + this.slackMm) return false;
       const node = network.portNode[p];
-      return [i, j].every((piece) => hasPlaceOn(network, node, this.pieces.centreline[piece]));
+      return (
+        distanceToOutline(common, xMm, yMm) <= radiusMm + this.slackMm &&
+        hasPlaceOn(network, node, centreline[i]) &&
+        hasPlaceOn(network, node, centreline[j])
+      );
     });
   }
 }
@@ -347,12 +260,6 @@ function reachOnto(pieces: Pieces, i: number, j: number): readonly [number, numb
 /** The pieces before and after one on its centreline. */
 function besides(pieces: Pieces, i: number): number[] {
   return [neighbourPiece(pieces, i, -1), neighbourPiece(pieces, i, 1)].filter((k) => k >= 0);
-}
-
-/** Distance along a piece, within it, of the place nearest to a point. */
-function alongPiece(pieces: Pieces, i: number, x: number, y: number): number {
-  const [dx, dy] = directionOf(pieces, i);
-  return Math.min(pieces.length[i], Math.max(0, (x - pieces.x1[i]) * dx + (y - pieces.y1[i]) * dy));
 }
 
 /** An overlap as stretches of its two centrelines that face each other. */

@@ -13,7 +13,7 @@ import type { Channel, Obstacle } from '../chip/types.ts';
 import { indexBoxes } from '../geometry/box-index.ts';
 import { distanceToSegment } from '../geometry/segment.ts';
 import type { Centreline } from '../layout/types.ts';
-import { boxRound, type Line } from './closest.ts';
+import { boxRound, type Line, type Place } from './closest.ts';
 
 type Circle = NonNullable<Obstacle['circle']>;
 
@@ -24,11 +24,9 @@ const PRECISION = 1e-3;
 const MOST_CELLS = 300_000;
 
 /** The widest span and the middle of its circle. */
-export interface FreeSpan {
+export interface FreeSpan extends Place {
   /** At most the channel's width. */
   readonly spanMm: number;
-  readonly xMm: number;
-  readonly yMm: number;
 }
 
 export function freeSpan(

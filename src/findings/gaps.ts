@@ -1,5 +1,5 @@
 import { endPiece } from '../geometry/pieces.ts';
-import { type Closest, type Line, lineBetween, middleOf, turned } from './closest.ts';
+import { type Closest, type Line, lineBetween, middleOf, type Place, turned } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 import { nearMisses, sidesOf } from './misses.ts';
 import { portsNear } from './near-ports.ts';
@@ -7,15 +7,12 @@ import { gapBetween, gapOf, gapTo, gapToHole, lineOf, paintedEnd, paintedHole } 
 import { channelMember, type PartMember, partsOnDrawing, portMember } from './parts.ts';
 import { type Tip, tipsOf } from './tips.ts';
 
-/** Where one connected part comes near another without meeting it. */
-export interface Gap {
+/** Where one connected part comes near another without meeting it: the end that stands there, else the middle. */
+export interface Gap extends Place {
   /** Names of the channel or well on either side, the side of the part asked about first. */
   readonly from: string;
   readonly to: string;
   readonly gapMm: number;
-  /** The end that stands at the gap; the middle of the gap where none does. */
-  readonly xMm: number;
-  readonly yMm: number;
   readonly mark: Line;
   /** The channel whose end stands at the gap, and what it stops short of; null where no end does. */
   readonly stopsShort: { readonly channel: string; readonly of: string } | null;

@@ -1,5 +1,6 @@
 import type { Obstacle } from '../chip/types.ts';
 import { grouped } from '../groups.ts';
+import type { Place } from './closest.ts';
 import type { FindingContext } from './context.ts';
 import { type Rule, rule, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
@@ -38,7 +39,7 @@ function whoText(group: readonly Obstacle[]): string {
   return isNamed ? `${what} (${listText(group.map(({ name }) => name))})` : what;
 }
 
-function middleOf({ circle, rings }: Obstacle): { readonly xMm: number; readonly yMm: number } {
+function middleOf({ circle, rings }: Obstacle): Place {
   if (circle !== null) return circle;
   const [ring] = rings;
   let [x, y] = [0, 0];

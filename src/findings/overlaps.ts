@@ -1,6 +1,6 @@
 import { placeOn } from '../geometry/on-piece.ts';
 import { directionOf, type Pieces } from '../geometry/pieces.ts';
-import { closestPoints, pointLine, stretchWithin } from './closest.ts';
+import { closestPoints, type Place, pointLine, stretchWithin } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 import { onlyGrows } from './growth.ts';
 import { endMeets } from './meets.ts';
@@ -9,19 +9,16 @@ import { isAbove } from './rule.ts';
 import { extentOf, type Facing, groupStretches } from './stretches.ts';
 
 /** Two centrelines, or two stretches of one, drawn along each other as if they were one channel. */
-export interface DoubleStroke {
+export interface DoubleStroke extends Place {
   /** Centrelines. */
   readonly a: number;
   readonly b: number;
   /** Extent on a, mm. */
   readonly from: number;
   readonly to: number;
-  readonly lengthMm: number;
   readonly limitMm: number;
   /** Largest distance of the two centrelines there, mm. */
   readonly apartMm: number;
-  readonly xMm: number;
-  readonly yMm: number;
 }
 
 /** Two strokes within this angle of each other run along each other. */
@@ -30,12 +27,15 @@ const ALONG_SINE = Math.sin((15 * Math.PI) / 180);
 /** Far below anything drawn, far above rounding: nearer than this two centrelines are in one place. */
 const SAME_PLACE_MM = 1e-6;
 
+interface Sample {
+  readonly s: number;
+  readonly apart: number;
+}
+
 interface Along extends Facing {
   readonly i: number;
-  readonly apartFrom: number;
-  readonly apartTo: number;
-  readonly apartLeast: number;
-  readonly leastAt: number;
+  /** How far the two are apart at positions on a, mm. */
+  readonly samples: readonly Sample[];
   readonly narrowMm: number;
   readonly limitMm: number;
 }
@@ -76,8 +76,10 @@ function addAlong(into: Along[], pieces: Pieces, i: number, j: number, distanceM
   const from = Math.max(within[0], Math.min(atStart, atEnd));
   const to = Math.min(within[1], Math.max(atStart, atEnd));
   if (to - from <= SAME_PLACE_MM) return;
-  const apart = (s: number): number =>
-    closestPoints(pointLine(one[0] + ux * s, one[1] + uy * s), two).distanceMm;
+  const sampleAt = (s: number): Sample => {
+    const { distanceMm } = closestPoints(pointLine(one[0] + ux * s, one[1] + uy * s), two);
+    return { s: pieces.start[i] + s, apart: distanceMm };
+  };
   const closest = closestPoints(one, two);
   const leastAt = Math.min(to, Math.max(from, Math.hypot(closest.x1 - one[0], closest.y1 - one[1])));
   into.push({
@@ -88,10 +90,7 @@ function addAlong(into: Along[], pieces: Pieces, i: number, j: number, distanceM
     to: pieces.start[i] + to,
     otherFrom: pieces.start[j] + offset + slope * from,
     otherTo: pieces.start[j] + offset + slope * to,
-    apartFrom: apart(from),
-    apartTo: apart(to),
-    apartLeast: apart(leastAt),
-    leastAt: pieces.start[i] + leastAt,
+    samples: [from, leastAt, to].map(sampleAt),
     narrowMm,
     limitMm: 2 * wideMm,
   });
@@ -115,10 +114,7 @@ function addRetraced(into: Along[], pieces: Pieces, i: number): void {
     to: turn,
     otherFrom: turn + length,
     otherTo: turn,
-    apartFrom: 0,
-    apartTo: 0,
-    apartLeast: 0,
-    leastAt: turn,
+    samples: [turn - length, turn].map((s) => ({ s, apart: 0 })),
     narrowMm: 2 * pieces.half[i],
     limitMm: 4 * pieces.half[i],
   });
@@ -126,77 +122,73 @@ function addRetraced(into: Along[], pieces: Pieces, i: number): void {
 
 /** The group as a double stroke; null when it is short, or nothing but two channels that cross or part. */
 function toDoubleStroke(
-  { chip, network }: FindingContext,
+  context: FindingContext,
   pieces: Pieces,
   group: readonly Along[],
 ): DoubleStroke | null {
   const { a, b, limitMm } = group[0];
-  const extent = extentOf(group);
-  let { fromA: from } = extent;
-  let { toA: to } = extent;
+  const { fromA, toA } = extentOf(group);
+  if (!isAbove(toA - fromA, limitMm)) return null;
+  const samples = group.flatMap((along) => along.samples);
+  const { from, to } = withoutParting(context, group, samples);
   if (!isAbove(to - from, limitMm)) return null;
-  const samples = group.flatMap((along) => [
-    { s: along.from, apart: along.apartFrom },
-    { s: along.leastAt, apart: along.apartLeast },
-    { s: along.to, apart: along.apartTo },
-  ]);
-  const meets = samples.filter(({ apart }) => apart <= SAME_PLACE_MM).map(({ s }) => s);
-  if (meets.length === 0) meets.push(...joinedEnds());
-  // Drawn to meet, but for the rounding of coordinates.
-  if (meets.length === 0) {
-    meets.push(...samples.filter(({ apart }) => apart <= chip.joinWithinMm).map(({ s }) => s));
-  }
-  if (meets.length > 0) {
-    const first = meets.reduce((least, s) => Math.min(least, s));
-    const last = meets.reduce((most, s) => Math.max(most, s));
-    const after = samples.filter(({ s }) => s >= last).map(({ s, apart }) => ({ way: s - last, apart }));
-    const before = samples.filter(({ s }) => s <= first).map(({ s, apart }) => ({ way: first - s, apart }));
-    const partsAfter = !endsThere(to) && onlyGrows(after, limitMm, chip.joinWithinMm);
-    const partsBefore = !endsThere(from) && onlyGrows(before, limitMm, chip.joinWithinMm);
-    if (partsAfter) to = last;
-    if (partsBefore) from = first;
-    if (!isAbove(to - from, limitMm)) return null;
-  }
   const middle = (from + to) / 2;
   const at = group.find((along) => along.to >= middle) ?? group[0];
   const share = (Math.min(at.to, Math.max(at.from, middle)) - pieces.start[at.i]) / pieces.length[at.i];
   const { x, y } = placeOn(pieces, at.i, share);
-  return {
-    a,
-    b,
-    from,
-    to,
-    lengthMm: to - from,
-    limitMm,
-    apartMm: samples.reduce((most, { s, apart }) => (s >= from && s <= to ? Math.max(most, apart) : most), 0),
-    xMm: x,
-    yMm: y,
-  };
+  const apartMm = samples.reduce(
+    (most, { s, apart }) => (s >= from && s <= to ? Math.max(most, apart) : most),
+    0,
+  );
+  return { a, b, from, to, limitMm, apartMm, xMm: x, yMm: y };
+}
+
+/** The stretch on a, less what lies before and behind the places where the two meet if they only move apart there. */
+function withoutParting(
+  { chip, network }: FindingContext,
+  group: readonly Along[],
+  samples: readonly Sample[],
+) {
+  const slack = chip.joinWithinMm;
+  const { pieces } = network.trace.near;
+  const [{ a, b, limitMm }] = group;
+  const { fromA, toA, fromB, toB } = extentOf(group);
+  const within = (apartMm: number): number[] =>
+    samples.filter(({ apart }) => apart <= apartMm).map(({ s }) => s);
+  // Else drawn to meet, but for the rounding of coordinates.
+  const meets = [within(SAME_PLACE_MM), joinedEnds(), within(slack)].find(({ length }) => length > 0);
+  if (meets === undefined) return { from: fromA, to: toA };
+  const first = meets.reduce((least, s) => Math.min(least, s));
+  const last = meets.reduce((most, s) => Math.max(most, s));
+  const after = samples.filter(({ s }) => s >= last).map(({ s, apart }) => ({ way: s - last, apart }));
+  const before = samples.filter(({ s }) => s <= first).map(({ s, apart }) => ({ way: first - s, apart }));
+  const partsAfter = !endsThere(toA) && onlyGrows(after, limitMm, slack);
+  const partsBefore = !endsThere(fromA) && onlyGrows(before, limitMm, slack);
+  return { from: partsBefore ? first : fromA, to: partsAfter ? last : toA };
 
   /** Positions on a of ends of either stroke that were carried on to the other: they meet in a node there. */
   function joinedEnds(): number[] {
-    const slack = chip.joinWithinMm;
     const isJoined = (c: number, other: number, position: number): boolean =>
       (position <= slack && endMeets(network, 2 * c, other)) ||
       (position >= pieces.centrelineLength[c] - slack && endMeets(network, 2 * c + 1, other));
-    return group.flatMap((along) => [
-      ...(isJoined(a, b, along.from) || isJoined(b, a, along.otherFrom) ? [along.from] : []),
-      ...(isJoined(a, b, along.to) || isJoined(b, a, along.otherTo) ? [along.to] : []),
-    ]);
+    return group
+      .flatMap(({ from, to, otherFrom, otherTo }) => [
+        [from, otherFrom],
+        [to, otherTo],
+      ])
+      .filter(([s, t]) => isJoined(a, b, s) || isJoined(b, a, t))
+      .map(([s]) => s);
   }
 
   /** Whether the stretch stops at s because one of the two strokes ends there, not because they part. */
   function endsThere(s: number): boolean {
-    const slack = chip.joinWithinMm;
     const isEnd = (c: number, position: number): boolean =>
       pieces.centrelineClosed[c] === 0 &&
       (position <= slack || position >= pieces.centrelineLength[c] - slack);
     if (isEnd(a, s)) return true;
-    const facing = group.find(
-      (along) => Math.abs(along.from - s) <= slack || Math.abs(along.to - s) <= slack,
-    );
+    const facing = group.find(({ from, to }) => Math.abs(from - s) <= slack || Math.abs(to - s) <= slack);
     if (facing === undefined) return false;
     const other = Math.abs(facing.to - s) <= slack ? facing.otherTo : facing.otherFrom;
-    return isEnd(b, other) && (other - extent.fromB <= slack || extent.toB - other <= slack);
+    return isEnd(b, other) && (other - fromB <= slack || toB - other <= slack);
   }
 }

@@ -54,10 +54,7 @@ export function paintedEnd(network: Network, end: number): Painted {
   const half = pieces.half[piece];
   const { linecap } = network.chip.channels[pieces.channel[piece]];
   if (linecap === 'round') return disc(x, y, half);
-  const beyond = linecap === 'square' ? half : 0;
-  const cx = x + outX * beyond;
-  const cy = y + outY * beyond;
-  const face: Line = [cx - outY * half, cy + outX * half, cx + outY * half, cy - outX * half];
+  const face = faceOf({ x, y, outX, outY, beyondMm: linecap === 'square' ? half : 0, round: null }, half);
   return { lines: [face], radius: 0, corners: null };
 }
 
@@ -101,73 +98,67 @@ export function paintedParts(chip: Chip, pieces: Pieces, i: number): Painted[] {
     linecap === 'butt' ? sectorsOf(pieces, i) : [ROUND, ROUND];
   const isWhole = !flatStart && !flatEnd && !isPlain && !isSector(atStart) && !isSector(atEnd);
   if (isWhole) return [{ lines, radius: half, corners: null }];
-  const beyond = linecap === 'square' ? half : 0;
-  const parts: Painted[] = [];
-  lines.forEach((line, k) => {
-    const start = flatStart && k === 0 ? 2 * pieces.centreline[i] : -1;
-    const end = flatEnd && k === lines.length - 1 ? 2 * pieces.centreline[i] + 1 : -1;
-    const rounds: readonly (Rounding | null)[] = isPlain
-      ? NO_ROUNDS
-      : [k === 0 ? atStart : ROUND, k === lines.length - 1 ? atEnd : ROUND];
-    if (start < 0 && end < 0 && rounds.every((round) => round === ROUND))
-      parts.push({ lines: [line], radius: half, corners: null });
-    else addFlatParts(parts, pieces, line, half, beyond, start, end, rounds);
+  const beyondMm = linecap === 'square' ? half : 0;
+  const flatAt = (end: number, x: number, y: number): LineEnd => {
+    return { x, y, outX: pieces.outX[end], outY: pieces.outY[end], beyondMm, round: null };
+  };
+  const c = pieces.centreline[i];
+  return lines.flatMap((line, k) => {
+    const [ax, ay, bx, by] = line;
+    const isFirst = k === 0;
+    const isLast = k === lines.length - 1;
+    const length = Math.hypot(bx - ax, by - ay);
+    const [ux, uy] = [(bx - ax) / length, (by - ay) / length];
+    const roundStart = isPlain ? null : isFirst ? atStart : ROUND;
+    const roundEnd = isPlain ? null : isLast ? atEnd : ROUND;
+    const start =
+      isFirst && flatStart
+        ? flatAt(2 * c, ax, ay)
+        : { x: ax, y: ay, outX: -ux, outY: -uy, beyondMm: 0, round: roundStart };
+    const end =
+      isLast && flatEnd
+        ? flatAt(2 * c + 1, bx, by)
+        : { x: bx, y: by, outX: ux, outY: uy, beyondMm: 0, round: roundEnd };
+    if (start.round === ROUND && end.round === ROUND) return [{ lines: [line], radius: half, corners: null }];
+    return partsBetween(start, end, half);
   });
-  return parts;
 }
 
-/** A straight line whose area is cut flat at the ends named, square to the channel there; −1: round, if wanted. */
-function addFlatParts(
-  into: Painted[],
-  pieces: Pieces,
-  [ax, ay, bx, by]: Line,
-  half: number,
-  beyond: number,
-  start: number,
-  end: number,
-  rounds: readonly (Rounding | null)[],
-): void {
-  const { outX, outY } = pieces;
-  const length = Math.hypot(bx - ax, by - ay);
-  const ux = (bx - ax) / length;
-  const uy = (by - ay) / length;
-  const [sx, sy] = start < 0 ? [ux, uy] : [-outX[start], -outY[start]];
-  const [ex, ey] = end < 0 ? [ux, uy] : [outX[end], outY[end]];
-  const atStart = start < 0 ? 0 : beyond;
-  const atEnd = end < 0 ? 0 : beyond;
-  const [px, py] = [ax - sx * atStart, ay - sy * atStart];
-  const [qx, qy] = [bx + ex * atEnd, by + ey * atEnd];
-  const corners = [
-    [px - sy * half, py + sx * half],
-    [qx - ey * half, qy + ex * half],
-    [qx + ey * half, qy - ex * half],
-    [px + sy * half, py - sx * half],
-  ] as const;
-  into.push(areaOf(corners));
-  if (start < 0) addRound(into, rounds[0], ax, ay, -ux, -uy, half);
-  if (end < 0) addRound(into, rounds[1], bx, by, ux, uy, half);
+/** One end of a straight line, the direction out of it, and the round there; flat, so far beyond it, where there is none. */
+interface LineEnd {
+  readonly x: number;
+  readonly y: number;
+  readonly outX: number;
+  readonly outY: number;
+  readonly beyondMm: number;
+  readonly round: Rounding | null;
 }
 
-const NO_ROUNDS: readonly null[] = [null, null];
+/** The straight face of an end across the line. */
+function faceOf({ x, y, outX, outY, beyondMm }: LineEnd, half: number): Line {
+  const cx = x + outX * beyondMm;
+  const cy = y + outY * beyondMm;
+  return [cx - outY * half, cy + outX * half, cx + outY * half, cy - outX * half];
+}
 
-/** The round at (x, y), where a line ends in direction (ux, uy). */
-function addRound(
-  into: Painted[],
-  rounding: Rounding | null,
-  x: number,
-  y: number,
-  ux: number,
-  uy: number,
-  half: number,
-): void {
-  if (rounding === null) return;
-  if (rounding === ROUND) {
-    into.push(disc(x, y, half));
-    return;
-  }
-  const { angle, side } = turnOf(ux, uy, rounding);
+function partsBetween(start: LineEnd, end: LineEnd, half: number): Painted[] {
+  const [px, py, qx, qy] = faceOf(start, half);
+  const [rx, ry, sx, sy] = faceOf(end, half);
+  const area = areaOf([
+    [qx, qy],
+    [rx, ry],
+    [sx, sy],
+    [px, py],
+  ]);
+  return [area, ...roundAt(start, half), ...roundAt(end, half)];
+}
+
+function roundAt({ x, y, outX: ux, outY: uy, round }: LineEnd, half: number): Painted[] {
+  if (round === null) return [];
+  if (round === ROUND) return [disc(x, y, half)];
+  const { angle, side } = turnOf(ux, uy, round);
   const count = Math.ceil(angle / 2 / Math.acos(Math.max(0.5, 1 - FINE_MM / half)));
-  if (count === 0) return;
+  if (count === 0) return [];
   const corners: [number, number][] = [[x, y]];
   for (let k = 0; k <= count; k++) {
     const turned = (angle * k) / count;
@@ -175,7 +166,7 @@ function addRound(
     const across = side * half * Math.cos(turned);
     corners.push([x + along * ux - across * uy, y + along * uy + across * ux]);
   }
-  into.push(areaOf(corners));
+  return [areaOf(corners)];
 }
 
 function areaOf(corners: readonly (readonly [number, number])[]): Painted {

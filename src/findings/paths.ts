@@ -1,3 +1,4 @@
+import { placeOn } from '../geometry/on-piece.ts';
 import { pieceAt } from '../geometry/pieces.ts';
 import { byGroup, type Groups, grouped } from '../groups.ts';
 import type { Network } from '../network/types.ts';
@@ -89,22 +90,15 @@ export class ChannelPaths {
 
   /** The ways from one arc to another, none longer than withinMm between the arcs' ends. */
   routes(arcA: number, arcB: number, withinMm: number): Route[] {
-    const { arcFrom, arcTo } = this.network.trace;
-    const routes: Route[] = [];
-    if (arcA === arcB) routes.push({ kind: 'along' });
-    for (const sideA of [0, 1]) {
-      for (const sideB of [0, 1]) {
-        const vertexA = this.sideVertex[2 * arcA + sideA];
-        const vertexB = this.sideVertex[2 * arcB + sideB];
-        const lengthMm = this.between(vertexA, vertexB, withinMm);
+    const routes: Route[] = arcA === arcB ? [{ kind: 'along' }] : [];
+    for (const leave of [2 * arcA, 2 * arcA + 1]) {
+      for (const enter of [2 * arcB, 2 * arcB + 1]) {
+        const [from, to] = [this.sideVertex[leave], this.sideVertex[enter]];
+        const lengthMm = this.between(from, to, withinMm);
         if (lengthMm > withinMm) continue;
-        routes.push({
-          kind: 'over',
-          leaveAt: sideA === 0 ? arcFrom[arcA] : arcTo[arcA],
-          enterAt: sideB === 0 ? arcFrom[arcB] : arcTo[arcB],
-          lengthMm,
-          vertex: vertexA === vertexB ? vertexA : -1,
-        });
+        const leaveAt = positionOf(this.network, leave);
+        const enterAt = positionOf(this.network, enter);
+        routes.push({ kind: 'over', leaveAt, enterAt, lengthMm, vertex: from === to ? from : -1 });
       }
     }
     return routes;
@@ -186,8 +180,8 @@ export function* joinsOf(context: FindingContext): Iterable<Int32Array> {
 export function pointOn({ trace }: Network, centreline: number, s: number): Point {
   const { pieces } = trace.near;
   const i = pieceAt(pieces, centreline, s);
-  const t = (s - pieces.start[i]) / pieces.length[i];
-  return [pieces.x1[i] + t * (pieces.x2[i] - pieces.x1[i]), pieces.y1[i] + t * (pieces.y2[i] - pieces.y1[i])];
+  const { x, y } = placeOn(pieces, i, (s - pieces.start[i]) / pieces.length[i]);
+  return [x, y];
 }
 
 /** A neighbourhood with more vertices than this within a few widths is no drawing that anyone could make; bounds the time. */
@@ -235,9 +229,11 @@ function nearestOf(points: ReadonlyMap<number, Point>, [x, y]: Point): number {
 
 /** Where an arc's start (even side) or end (odd side) lies. */
 export function sidePoint(network: Network, side: number): Point {
-  const { trace } = network;
-  const arc = side >> 1;
-  return pointOn(network, trace.arcCentreline[arc], (side & 1) === 0 ? trace.arcFrom[arc] : trace.arcTo[arc]);
+  return pointOn(network, network.trace.arcCentreline[side >> 1], positionOf(network, side));
+}
+
+function positionOf({ trace }: Network, side: number): number {
+  return (side & 1) === 0 ? trace.arcFrom[side >> 1] : trace.arcTo[side >> 1];
 }
 
 /** Whether the way along the channels from one place on a centreline to another is within a length (mm). */
@@ -265,15 +261,11 @@ export function isNearPort(
   withinMm: number,
 ): boolean {
   const { network } = context;
-  const { arcFrom, arcTo } = network.trace;
   const paths = channelPaths(context);
   const arc = paths.arcAt(centreline, s);
   if (arc < 0) return true;
-  const node = network.portNode[port];
-  return (
-    Math.min(
-      paths.between(node, paths.sideVertex[2 * arc], withinMm) + Math.abs(s - arcFrom[arc]),
-      paths.between(node, paths.sideVertex[2 * arc + 1], withinMm) + Math.abs(s - arcTo[arc]),
-    ) <= withinMm
-  );
+  const wayTo = (side: number): number =>
+    paths.between(network.portNode[port], paths.sideVertex[side], withinMm) +
+    Math.abs(s - positionOf(network, side));
+  return Math.min(wayTo(2 * arc), wayTo(2 * arc + 1)) <= withinMm;
 }

@@ -177,27 +177,25 @@ function isAllInside(points: Float64Array, { xMm, yMm }: Port, within: number): 
 
 /** How many separate places inside the well there are where centrelines meet. */
 function meetingsInside({ chip, network }: FindingContext, inside: readonly number[], port: Port): number {
-  const { pieces, firstPair, pairOf, pairA, pairB, pairDistance } = network.trace.near;
+  const { pieces, pairA, pairB, pairDistance, firstPair, pairOf } = network.trace.near;
   const slack = chip.joinWithinMm;
   /** Cells as wide as the slack, so that a place is found again without looking at all of them. */
   const cells = new Set<string>();
+  const isKnown = (column: number, row: number): boolean =>
+    NEXT.some((dx) => NEXT.some((dy) => cells.has(`${column + dx} ${row + dy}`)));
   const close = new Set(inside);
   let count = 0;
   for (const i of inside) {
-    for (let k = firstPair[i]; k < firstPair[i + 1]; k++) {
-      const pair = pairOf[k];
+    for (const pair of pairOf.subarray(firstPair[i], firstPair[i + 1])) {
       if (pairA[pair] !== i || pairDistance[pair] > slack || !close.has(pairB[pair])) continue;
       const { x1, y1 } = closestPoints(lineOf(pieces, i), lineOf(pieces, pairB[pair]));
       if (Math.hypot(x1 - port.xMm, y1 - port.yMm) >= port.radiusMm) continue;
-      const column = Math.round(x1 / slack);
-      const row = Math.round(y1 / slack);
-      let known = false;
-      for (let dx = -1; dx <= 1; dx++) {
-        for (let dy = -1; dy <= 1; dy++) known ||= cells.has(`${column + dx} ${row + dy}`);
-      }
+      const [column, row] = [Math.round(x1 / slack), Math.round(y1 / slack)];
+      if (!isKnown(column, row)) count++;
       cells.add(`${column} ${row}`);
-      if (!known) count++;
     }
   }
   return count;
 }
+
+const NEXT = [-1, 0, 1];

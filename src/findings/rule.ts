@@ -1,6 +1,6 @@
 import { LIMIT_SLACK } from '../chip/limits.ts';
 import type { Limits, Sourced } from '../chip/types.ts';
-import type { Line } from './closest.ts';
+import type { Line, Place } from './closest.ts';
 import type { FindingContext } from './context.ts';
 import type { Finding, NotRun, Severity } from './types.ts';
 
@@ -23,7 +23,7 @@ export interface FindingParts {
   readonly message: string;
   readonly fix: string;
   /** Where to look; null for a fault of the whole chip. */
-  readonly at: { readonly xMm: number; readonly yMm: number } | null;
+  readonly at: Place | null;
   /** The first is the one to look at. */
   readonly names: readonly string[];
   /** SI value and limit of the rule's measure; left out when it has none. A value that does not exist is null. */

@@ -1,12 +1,11 @@
 import type { Channel, Chip, Sourced } from '../chip/types.ts';
 import { grouped } from '../groups.ts';
-import { reachName } from '../network/names.ts';
 import { meanRoofRise, risenResistanceFactor } from '../physics/roof.ts';
 import { formatNumber, formatShare } from '../runsheet/shown.ts';
 import { acrossMark, middleOfChannel } from './centrelines.ts';
 import type { FindingContext } from './context.ts';
 import { type FreeSpan, freeSpan } from './free-span.ts';
-import { middleOfReach, othersText, reachesOf, reachNames, worstReach } from './reaches.ts';
+import { type AtWorst, perChannel } from './reaches.ts';
 import {
   found,
   isAbove,
@@ -123,62 +122,71 @@ function softWalls(context: FindingContext): RuleOutcome {
   const { chip, run, network, flow } = context;
   const stiffness = run.limits.stiffnessPa;
   if (stiffness === null) return withoutLimit('soft-walls', 'stiffness', context);
-  const show = showFor(context);
   let unknown = 0;
-  const findings = chip.channels.map((channel, c) => {
-    const widthM = (2 * channel.stripHalfWidthMm) / 1e3;
-    const depthM = channel.depthMm / 1e3;
-    const worst = worstReach(
-      reachesOf(context, c),
-      (reach) => {
-        const pressurePa = meanPressure(reach);
-        if (Number.isNaN(pressurePa) || !(widthM > 0 && depthM > 0)) {
-          unknown++;
-          return null;
-        }
-        const riseM = meanRoofRise(pressurePa, widthM, stiffness.value);
-        const share = Math.abs(riseM) / depthM;
-        return isAbove(share, RISE_SHARE) ? { pressurePa, riseM, share } : null;
-      },
-      ({ share }) => share,
-    );
-    if (worst === null) return null;
-    const { pressurePa, riseM, share } = worst.fault;
-    const name = reachName(network, worst.reach);
-    const factor = risenResistanceFactor(depthM, riseM);
-    const effect =
-      factor === Infinity
-        ? 'it comes down to the floor and the duct closes'
-        : `the resistance is about ${formatNumber(Math.abs(factor - 1) * 100, 2)} % ${riseM > 0 ? 'lower' : 'higher'} than computed, and flow and wall shear are off with it`;
-    const narrowMm = (channel.drawnWidthMm * RISE_SHARE) / share;
-    const leastDepthM = Math.abs(riseM) / RISE_SHARE;
-    const { minWidthM, maxDepthToWidth } = run.limits;
-    // Advice that another rule would hold, or that nobody could make, is none.
-    const ways = [
-      ...(narrowMm >= Math.max(LEAST_WIDTH_MM, 1e3 * (minWidthM?.value ?? 0))
-        ? [`narrow it to ${sizeAtMostText(narrowMm)}`]
-        : []),
-      ...(leastDepthM * 1e3 <= (maxDepthToWidth?.value ?? 1) * channel.ductWidthMm
-        ? [`etch it ${leastText(leastDepthM * 1e3)} deep`]
-        : []),
-    ];
-    return toFinding('soft-walls', 'caution', {
-      message: `the roof of ${name} ${riseM > 0 ? 'rises' : 'sinks'} by ${show.text('cross_length', Math.abs(riseM))} on average, ${formatShare(share)} of its depth, at ${show.text('pressure', pressurePa)} and a stiffness of ${limitText(show.text('pressure', stiffness.value), stiffness)}: ${effect}${othersText(context, worst)}`,
-      fix: `keep ${name} below ${show.text('pressure', (Math.abs(pressurePa) * RISE_SHARE) / share)}${ways.map((way) => `, ${way}`).join('')}, or make the chip of something stiffer`,
-      at: middleOfReach(network, worst.reach),
-      names: reachNames(context, worst),
-      measure: { value: share, limit: RISE_SHARE, unit: '' },
-    });
-  });
+  const findings = perChannel(
+    context,
+    (reach, channel): SoftWall | null => {
+      const { stripHalfWidthMm, depthMm } = chip.channels[channel];
+      const widthM = (2 * stripHalfWidthMm) / 1e3;
+      const depthM = depthMm / 1e3;
+      const pressurePa = meanPressure(reach);
+      if (Number.isNaN(pressurePa) || !(widthM > 0 && depthM > 0)) {
+        unknown++;
+        return null;
+      }
+      const riseM = meanRoofRise(pressurePa, widthM, stiffness.value);
+      const share = Math.abs(riseM) / depthM;
+      return isAbove(share, RISE_SHARE) ? { pressurePa, riseM, depthM, share, channel } : null;
+    },
+    ({ share }) => share,
+    (fault, worst) => toSoftWall(context, fault, worst, stiffness),
+  );
   const all = unknown === network.reachCount && unknown > 0;
-  return all
-    ? notRun('soft-walls', 'no pressure in the chip is known')
-    : found(findings.filter((finding) => finding !== null));
+  return all ? notRun('soft-walls', 'no pressure in the chip is known') : found(findings);
 
   function meanPressure(reach: number): number {
     if (flow === null) return Number.NaN;
     return (flow.nodePressure[network.reachFrom[reach]] + flow.nodePressure[network.reachTo[reach]]) / 2;
   }
+}
+
+interface SoftWall {
+  readonly channel: number;
+  readonly pressurePa: number;
+  readonly depthM: number;
+  readonly riseM: number;
+  /** Of the depth. */
+  readonly share: number;
+}
+
+function toSoftWall(
+  context: FindingContext,
+  { channel, pressurePa, depthM, riseM, share }: SoftWall,
+  { name, others, place, names }: AtWorst,
+  stiffness: Sourced<number>,
+): Finding {
+  const show = showFor(context);
+  const { drawnWidthMm, ductWidthMm } = context.chip.channels[channel];
+  const factor = risenResistanceFactor(depthM, riseM);
+  const effect =
+    factor === Infinity
+      ? 'it comes down to the floor and the duct closes'
+      : `the resistance is about ${formatNumber(Math.abs(factor - 1) * 100, 2)} % ${riseM > 0 ? 'lower' : 'higher'} than computed, and flow and wall shear are off with it`;
+  const narrowMm = (drawnWidthMm * RISE_SHARE) / share;
+  const leastDepthM = Math.abs(riseM) / RISE_SHARE;
+  const { minWidthM, maxDepthToWidth } = context.run.limits;
+  // Advice that another rule would hold, or that nobody could make, is none.
+  const canNarrow = narrowMm >= Math.max(LEAST_WIDTH_MM, 1e3 * (minWidthM?.value ?? 0));
+  const canDeepen = leastDepthM * 1e3 <= (maxDepthToWidth?.value ?? 1) * ductWidthMm;
+  const narrower = canNarrow ? `, narrow it to ${sizeAtMostText(narrowMm)}` : '';
+  const deeper = canDeepen ? `, etch it ${leastText(leastDepthM * 1e3)} deep` : '';
+  return toFinding('soft-walls', 'caution', {
+    message: `the roof of ${name} ${riseM > 0 ? 'rises' : 'sinks'} by ${show.text('cross_length', Math.abs(riseM))} on average, ${formatShare(share)} of its depth, at ${show.text('pressure', pressurePa)} and a stiffness of ${limitText(show.text('pressure', stiffness.value), stiffness)}: ${effect}${others}`,
+    fix: `keep ${name} below ${show.text('pressure', (Math.abs(pressurePa) * RISE_SHARE) / share)}${narrower}${deeper}, or make the chip of something stiffer`,
+    at: place,
+    names,
+    measure: { value: share, limit: RISE_SHARE, unit: '' },
+  });
 }
 
 /** One finding per layer: everyone who reads the drawing must know that the etch is wider than the mask. */

@@ -9,7 +9,9 @@ import { distanceText } from './words.ts';
 export const strokeRules: readonly Rule[] = [rule('double-stroke', doubles)];
 
 function doubles(context: FindingContext): Finding[] {
-  return doubleStrokes(context).map(({ a, b, lengthMm, limitMm, apartMm, xMm, yMm }) => {
+  return doubleStrokes(context).map((double) => {
+    const { a, b, from, to, limitMm, apartMm } = double;
+    const lengthMm = to - from;
     const one = channelOf(context.network, a).name;
     const two = channelOf(context.network, b).name;
     const same = one === two;
@@ -20,7 +22,7 @@ function doubles(context: FindingContext): Finding[] {
       fix: same
         ? `draw that part of ${one} once`
         : `delete the part of ${two} that runs along ${one}, or move it clear if it is meant to be a channel of its own; in the run sheet, name it under ignore: if it is no channel, or give its layer a plane: of its own if it lies in another sheet`,
-      at: { xMm, yMm },
+      at: double,
       names: same ? [one] : [two, one],
       measure: lengthMeasure(lengthMm, limitMm),
     });

@@ -22,16 +22,14 @@ export interface ThinWall extends Wall {
 
 /** One pair of pieces' share of a thin wall. */
 interface ThinStretch extends Facing {
-  readonly i: number;
-  readonly j: number;
+  readonly faced: FacedWalls;
   /** All of piece i that is thin, also where the way along the channels is short. */
   readonly thinFrom: number;
   readonly thinTo: number;
-  readonly apartMm: number;
-  readonly limitMm: number;
   /** Length along the channels from one side to the other, at from and at to. */
   readonly wayFrom: number;
   readonly wayTo: number;
+  /** Material at from and at to, and at the thinnest place. */
   readonly gapFrom: number;
   readonly gapTo: number;
   readonly gapMm: number;
@@ -61,9 +59,9 @@ export function findThinWalls(
       : facedWalls(context, pieces, i, j, near.pairDistance[k], limitMm);
     if (faced !== null) addThinStretches(stretches, context, faced);
   }
-  return groupStretches(stretches, ({ apartMm }) => apartMm / 2)
+  return groupStretches(stretches, ({ faced }) => faced.apartMm / 2)
     .filter((group) => !isNoWall(context, group))
-    .map((group) => toThinWall(context, pieces, group));
+    .map((group) => toThinWall(context, group));
 }
 
 /** Whether the stretch lies in a third strip, or begins where the two sides part, at either of its ends, and they only move apart from there. */
@@ -91,21 +89,22 @@ function partsFrom(
     { way: Math.abs(thinnestAt - s), apart: gapMm },
     { way: Math.abs(to - s), apart: gapTo },
   ]);
-  if (!onlyGrows(samples, stretch.apartMm, context.chip.joinWithinMm)) return false;
+  const { apartMm } = stretch.faced;
+  if (!onlyGrows(samples, apartMm, context.chip.joinWithinMm)) return false;
   if (isInThird(context, stretch, s, t)) return true;
   // A group that does not go down to the least way (give or take the jump from one chord of a curve to the next) begins
   // further along: a stretch of its own.
   const farMm = samples.reduce((most, sample) => Math.max(most, sample.way), 0);
-  return way <= 1.25 * stretch.apartMm && partInProportion(context, stretch, s, t, farMm);
+  return way <= 1.25 * apartMm && partInProportion(context, stretch, s, t, farMm);
 }
 
 /**
  * Whether both sides lie in one third strip there that both are joined to: two feeders that end side by side in a chamber
  * part at its wall, however far apart their nodes are on its centreline, and in it there is no wall between them.
  */
-function isInThird(context: FindingContext, { a, b, i, j }: ThinStretch, s: number, t: number): boolean {
+function isInThird(context: FindingContext, { a, b, faced }: ThinStretch, s: number, t: number): boolean {
   const { network } = context;
-  return liesInThird(context, i, j, pointOn(network, a, s), pointOn(network, b, t));
+  return liesInThird(context, faced.i, faced.j, pointOn(network, a, s), pointOn(network, b, t));
 }
 
 /**
@@ -115,14 +114,14 @@ function isInThird(context: FindingContext, { a, b, i, j }: ThinStretch, s: numb
  */
 function partInProportion(
   context: FindingContext,
-  { a, b, apartMm }: ThinStretch,
+  { a, b, faced }: ThinStretch,
   s: number,
   t: number,
   farMm: number,
 ): boolean {
   const { network } = context;
   const paths = channelPaths(context);
-  const route = shortest(paths.routes(paths.arcAt(a, s), paths.arcAt(b, t), apartMm), s, t);
+  const route = shortest(paths.routes(paths.arcAt(a, s), paths.arcAt(b, t), faced.apartMm), s, t);
   if (route === null) return false;
   if (route.kind === 'along') return isProportional(s, t, (3 * s + t) / 4, (s + 3 * t) / 4);
   // From a port the sides part at its centre, not at the rim where the way begins; and an end that was carried on begins
@@ -131,20 +130,21 @@ function partInProportion(
   const isPort = node >= 0 && node < network.nodeCount && network.nodePort[node] >= 0;
   if (isPort || (node >= 0 && (isCarriedOn(a, route.leaveAt) || isCarriedOn(b, route.enterAt)))) return true;
   // Joined a little way from where they part (drawn at rounding), one side's way begins there, as if it had gone on back.
-  const backA = route.leaveAt - Math.sign(s - route.leaveAt) * route.lengthMm;
-  const backB = route.enterAt - Math.sign(t - route.enterAt) * route.lengthMm;
+  const { leaveAt, enterAt, lengthMm } = route;
+  const backA = leaveAt - Math.sign(s - leaveAt) * lengthMm;
+  const backB = enterAt - Math.sign(t - enterAt) * lengthMm;
   for (let times = 1; ; times *= 2) {
-    const onA = route.leaveAt + times * (s - route.leaveAt);
-    const onB = route.enterAt + times * (t - route.enterAt);
-    if (
-      isProportional(onA, onB, (onA + route.leaveAt) / 2, (onB + route.enterAt) / 2) ||
-      isProportional(onA, onB, (onA + backA) / 2, (onB + route.enterAt) / 2) ||
-      isProportional(onA, onB, (onA + route.leaveAt) / 2, (onB + backB) / 2)
-    ) {
-      return true;
-    }
+    const onA = leaveAt + times * (s - leaveAt);
+    const onB = enterAt + times * (t - enterAt);
+    const halfA = (onA + leaveAt) / 2;
+    const halfB = (onB + enterAt) / 2;
+    const parts =
+      isProportional(onA, onB, halfA, halfB) ||
+      isProportional(onA, onB, (onA + backA) / 2, halfB) ||
+      isProportional(onA, onB, halfA, (onB + backB) / 2);
+    if (parts) return true;
     const areApart = distanceBetween(onA, onB) > context.chip.joinWithinMm;
-    const step = Math.abs(s - route.leaveAt);
+    const step = Math.abs(s - leaveAt);
     if (areApart || step === 0 || (2 * times - 1) * step > farMm) return false;
   }
 
@@ -173,7 +173,7 @@ function shortest(routes: readonly Route[], s: number, t: number): Route | null 
   return best;
 }
 
-function toThinWall({ chip }: FindingContext, pieces: Pieces, group: readonly ThinStretch[]): ThinWall {
+function toThinWall({ chip }: FindingContext, group: readonly ThinStretch[]): ThinWall {
   const gapMm = group.reduce((least, stretch) => Math.min(least, stretch.gapMm), Number.POSITIVE_INFINITY);
   let thinnest = group.find((stretch) => stretch.gapMm === gapMm) ?? group[0];
   // Equally thin for long: the middle of the longest such stretch is where to look.
@@ -182,18 +182,19 @@ function toThinWall({ chip }: FindingContext, pieces: Pieces, group: readonly Th
       thinnest = stretch;
   }
   return {
-    pieceA: thinnest.i,
-    pieceB: thinnest.j,
+    pieceA: thinnest.faced.i,
+    pieceB: thinnest.faced.j,
     ...extentOf(group),
     lengthMm: coveredLength(group.map(({ thinFrom, thinTo }) => [thinFrom, thinTo])),
     gapMm: thinnest.gapMm,
-    limitMm: thinnest.limitMm,
-    mark: markAt(chip, pieces, thinnest),
+    limitMm: thinnest.faced.limitMm,
+    mark: markAt(chip, thinnest),
   };
 }
 
 /** From wall to wall at the thinnest place of a stretch. */
-function markAt(chip: Chip, pieces: Pieces, { i, j, gapMm, thinnestAt }: ThinStretch): Line {
+function markAt(chip: Chip, { faced, gapMm, thinnestAt }: ThinStretch): Line {
+  const { pieces, i, j } = faced;
   const { half } = pieces;
   const t = Math.min(1, Math.max(0, (thinnestAt - pieces.start[i]) / pieces.length[i]));
   const { x, y } = placeOn(pieces, i, t);
@@ -287,7 +288,7 @@ function gapAt({ pieces, i, j, exactMm }: FacedWalls, s: number): number {
 
 /** The parts of the first piece that are thin and far enough along the channels. */
 function addThinStretches(into: ThinStretch[], context: FindingContext, faced: FacedWalls): void {
-  const { pieces, i, j, limitMm, apartMm, nearestAt, slope } = faced;
+  const { pieces, i, j, apartMm, nearestAt, slope } = faced;
   const a = pieces.centreline[i];
   const b = pieces.centreline[j];
   const paths = channelPaths(context);
@@ -312,16 +313,13 @@ function addThinStretches(into: ThinStretch[], context: FindingContext, faced: F
     into.push({
       a,
       b,
-      i,
-      j,
+      faced,
       from,
       to,
       otherFrom,
       otherTo,
       thinFrom: Math.min(from, low),
       thinTo: Math.max(to, high),
-      apartMm,
-      limitMm,
       wayFrom: wayOf(routes, from, otherFrom),
       wayTo: wayOf(routes, to, otherTo),
       gapFrom: gapAt(faced, from),
