@@ -23,6 +23,14 @@ export function pointLine(x: number, y: number): Line {
   return [x, y, x, y];
 }
 
+/** The straight lines from each point to the next, of x0 y0 x1 y1 … */
+export function linesAlong(points: Float64Array): Line[] {
+  const lines: Line[] = [];
+  for (let i = 0; i + 3 < points.length; i += 2)
+    lines.push([points[i], points[i + 1], points[i + 2], points[i + 3]]);
+  return lines;
+}
+
 /** Left, top, right and bottom of what lies within a reach of a line along the axes. */
 export function boxRound([ax, ay, bx, by]: Line, reach: number): readonly [number, number, number, number] {
   return [

@@ -9,6 +9,7 @@ import {
   type Closest,
   closestPoints,
   type Line,
+  linesAlong,
   middleOf,
   nearer,
   type Place,
@@ -136,13 +137,7 @@ interface Outline {
 }
 
 function toOutline(rings: readonly Float64Array[]): Outline {
-  const sides: Line[] = [];
-  for (const ring of rings) {
-    for (let k = 0; k + 3 < ring.length; k += 2) {
-      if (ring[k] === ring[k + 2] && ring[k + 1] === ring[k + 3]) continue;
-      sides.push([ring[k], ring[k + 1], ring[k + 2], ring[k + 3]]);
-    }
-  }
+  const sides = rings.flatMap(linesAlong).filter(([ax, ay, bx, by]) => ax !== bx || ay !== by);
   const index = indexBoxes(sides.flatMap((side) => boxRound(side, 0)));
   return { contains: indexRings([rings]).contains, sides, index };
 }

@@ -17,7 +17,7 @@ import { type FindingContext, oncePerContext } from './context.ts';
 import { hasPlaceOn } from './meets.ts';
 import { portsNear } from './near-ports.ts';
 import { alongPiece, isLeftOutOn, meetInNode } from './shared-nodes.ts';
-import { coveredLength, extentOf, type Facing, groupStretches, type Wall } from './stretches.ts';
+import { coveredLength, extentOf, type Facing, groupStretches, rangeOf, type Wall } from './stretches.ts';
 
 /**
  * One etched area is one network: where two strips of a plane overlap, or two stretches of one more than four widths
@@ -32,26 +32,24 @@ import { coveredLength, extentOf, type Facing, groupStretches, type Wall } from 
  */
 export const unjoinedAreas: (context: FindingContext) => readonly Wall[] = oncePerContext((context) => {
   const { pieces } = context.network.trace.near;
-  const faced = overlapsOf(context)
-    .unjoined()
-    .map((overlap) => toFaced(pieces, overlap));
+  const unjoined = overlapsOf(context)
+    .all()
+    .filter(({ joined }) => !joined);
+  const faced = unjoined.map((overlap) => toFaced(pieces, overlap));
   return groupStretches(faced, ({ bridgeMm }) => bridgeMm).map(toWall);
 });
 
+type Point = readonly [x: number, y: number];
+
 /** Whether a place on piece i and one on piece j lie in one third strip that both pieces are joined to there. */
-export function liesInThird(
-  context: FindingContext,
-  i: number,
-  j: number,
-  onI: readonly [number, number],
-  onJ: readonly [number, number],
-): boolean {
+export function liesInThird(context: FindingContext, i: number, j: number, onI: Point, onJ: Point): boolean {
   return overlapsOf(context).liesInThird(i, j, onI, onJ);
 }
 
 const overlapsOf = oncePerContext((context) => {
   const overlaps = new Overlaps(context);
-  overlaps.passOn(overlaps.withoutNode());
+  overlaps.findOpen();
+  overlaps.passOn(overlaps.all());
   return overlaps;
 });
 
@@ -83,7 +81,7 @@ class Overlaps {
   }
 
   /** The overlaps of near pairs that hold no node of both and reach no well of both. */
-  withoutNode(): readonly Overlap[] {
+  findOpen(): void {
     const { pieces } = this;
     const { pairCount, pairA, pairB, pairDistance } = this.context.network.trace.near;
     for (let k = 0; k < pairCount; k++) {
@@ -95,22 +93,18 @@ class Overlaps {
       if (pairDistance[k] > pieces.half[i] + pieces.half[j]) continue;
       if (isOneStretch(pieces, i, j) || meetInNode(this.context, i, j)) continue;
       const common = overlapOf(pieces, i, j);
-      if (common === null) {
-        this.open.set(k, null);
-        continue;
-      }
-      if (isLeftOutOn(this.context, i, j) || isLeftOutOn(this.context, j, i)) continue;
-      if (this.meetInWell(i, j, common)) continue;
-      this.open.set(k, { i, j, common, joined: false });
+      if (common === null) this.open.set(k, null);
+      else if (
+        !isLeftOutOn(this.context, i, j) &&
+        !isLeftOutOn(this.context, j, i) &&
+        !this.meetInWell(i, j, common)
+      )
+        this.open.set(k, { i, j, common, joined: false });
     }
-    return this.all();
   }
 
-  unjoined(): readonly Overlap[] {
-    return this.all().filter(({ joined }) => !joined);
-  }
-
-  private all(): readonly Overlap[] {
+  /** Those that square ends do not keep apart. */
+  all(): readonly Overlap[] {
     return [...this.open.values()].filter((overlap) => overlap !== null);
   }
 
@@ -128,7 +122,7 @@ class Overlaps {
     }
   }
 
-  liesInThird(i: number, j: number, onI: readonly [number, number], onJ: readonly [number, number]): boolean {
+  liesInThird(i: number, j: number, onI: Point, onJ: Point): boolean {
     const { pieces, slackMm } = this;
     return this.thirdsOf(i, j).some(
       (k) =>
@@ -293,14 +287,8 @@ function toFaced(pieces: Pieces, overlap: Overlap): Faced {
 }
 
 function extentOn(pieces: Pieces, i: number, outline: Outline): readonly [number, number] {
-  let low = Number.POSITIVE_INFINITY;
-  let high = Number.NEGATIVE_INFINITY;
-  for (let k = 0; k < outline.length; k += 2) {
-    const s = pieces.start[i] + alongPiece(pieces, i, outline[k], outline[k + 1]);
-    low = Math.min(low, s);
-    high = Math.max(high, s);
-  }
-  return [low, high];
+  const corners = outline.flatMap((x, k) => (k % 2 === 0 ? [[x, outline[k + 1]]] : []));
+  return rangeOf(corners.map(([x, y]) => pieces.start[i] + alongPiece(pieces, i, x, y)));
 }
 
 function toWall(group: readonly Faced[]): Wall {

@@ -13,7 +13,7 @@ import type { Channel, Obstacle } from '../chip/types.ts';
 import { indexBoxes } from '../geometry/box-index.ts';
 import { distanceToSegment } from '../geometry/segment.ts';
 import type { Centreline } from '../layout/types.ts';
-import { boxRound, type Line, type Place } from './closest.ts';
+import { boxRound, type Line, linesAlong, type Place } from './closest.ts';
 
 type Circle = NonNullable<Obstacle['circle']>;
 
@@ -56,7 +56,7 @@ export function freeSpan(
   const heap = new Cells();
   for (const { points } of centrelines) {
     // Cells as wide as the channel along the centreline hold every point within half of it.
-    for (const [x1, y1, x2, y2] of edgesOf(points)) {
+    for (const [x1, y1, x2, y2] of linesAlong(points)) {
       const count = Math.max(1, Math.ceil(Math.hypot(x2 - x1, y2 - y1) / drawnWidthMm));
       for (let k = 0; k < count; k++) {
         const t = (k + 0.5) / count;
@@ -97,7 +97,7 @@ function nearestInStrip(
   lines: readonly Centreline[],
 ): (x: number, y: number, within: number) => Nearest | null {
   const pieces = lines.flatMap(({ points, closed }) =>
-    edgesOf(points).map((edge, i, { length }) => ({
+    linesAlong(points).map((edge, i, { length }) => ({
       edge,
       startsOpen: !closed && i === 0,
       endsOpen: !closed && i === length - 1,
@@ -156,7 +156,7 @@ function distanceToPillars(pillars: readonly Obstacle[], wells: readonly Circle[
 }
 
 function distanceToShapes(shapes: readonly (readonly Float64Array[])[]): Distance {
-  const edges = shapes.flatMap((rings) => rings.flatMap(edgesOf));
+  const edges = shapes.flatMap((rings) => rings.flatMap(linesAlong));
   const near = edgesNear(edges);
   const areas = indexRings(shapes);
   return (x, y, within) => {
@@ -164,13 +164,6 @@ function distanceToShapes(shapes: readonly (readonly Float64Array[])[]): Distanc
     for (const i of near(x, y, within)) nearest = Math.min(nearest, distanceToSegment(x, y, ...edges[i]));
     return areas.groupsRound(x, y).length > 0 ? -Math.min(nearest, within) : nearest;
   };
-}
-
-function edgesOf(points: Float64Array): Line[] {
-  return Array.from({ length: Math.max(0, points.length / 2 - 1) }, (_, k): Line => {
-    const i = 2 * k;
-    return [points[i], points[i + 1], points[i + 2], points[i + 3]];
-  });
 }
 
 function edgesNear(edges: readonly Line[]): (x: number, y: number, within: number) => readonly number[] {

@@ -8,7 +8,7 @@ import { portsNear } from './near-ports.ts';
 import { gapOf, gapTo, gapToHole, lineOf, type Painted, paintedEnd, paintedHole } from './painted.ts';
 import { pairKey } from './pairs.ts';
 import { channelMember, type PartMember, portMember } from './parts.ts';
-import { isNearAlong, isNearPort, pointOn } from './paths.ts';
+import { isNearAlong, isNearPort, type OnCentreline, pointOn } from './paths.ts';
 import { isAbove, isBelow } from './rule.ts';
 import type { ThinWall } from './thin.ts';
 import { endPlace, type Tip, tipOfEnd, tipsOf } from './tips.ts';
@@ -97,6 +97,8 @@ const COS_45 = Math.SQRT1_2;
 /** A tip with what it takes to judge what it misses. */
 interface Aim {
   readonly tip: Tip;
+  /** Its first end, and the places of all. */
+  readonly at: OnCentreline;
   readonly places: readonly ReturnType<typeof endPlace>[];
   /** Half the width of its widest channel, mm. */
   readonly half: number;
@@ -108,13 +110,15 @@ interface Aim {
 function toAim({ chip, network }: FindingContext, tip: Tip): Aim {
   const { pieces } = network.trace.near;
   const places = tip.ends.map((end) => endPlace(network, end));
-  const [{ piece }] = places;
+  const [{ piece, s }] = places;
+  const at = { c: pieces.centreline[piece], s };
   const half = pieces.half[piece];
   const wallMm = minWallMm(chip, chip.channels[pieces.channel[piece]].depthMm)?.value ?? 0;
   const limitMm = Math.max(wallMm, Math.min(2 * half, MOST_WIDTH_MM));
   // Of strokes that come from one side the widest paints the tip; those of a fan each paint their part.
   const ends = tip.kind === 'end' ? tip.ends.slice(0, 1) : tip.ends;
-  return { tip, places, half, wallMm, limitMm, painted: ends.map((end) => paintedEnd(network, end)) };
+  const painted = ends.map((end) => paintedEnd(network, end));
+  return { tip, at, places, half, wallMm, limitMm, painted };
 }
 
 /** The thing that a tip most likely was to meet: what it points at goes before, then what is nearest. */
@@ -150,7 +154,7 @@ function missedPieces(context: FindingContext, aim: Aim): NearMiss[] {
 function missOfPiece(context: FindingContext, aim: Aim, i: number): NearMiss | null {
   const { chip, network } = context;
   const { pieces } = network.trace.near;
-  const { tip, places, half, wallMm, painted } = aim;
+  const { tip, half, wallMm, painted } = aim;
   const gap = painted.map((end) => gapTo(chip, pieces, i, end)).reduce(nearer);
   if (!isBelow(gap.distanceMm, aim.limitMm)) return null;
   // Seen from the middle of the end, the nearest painted point says where it points and how far it must go.
@@ -161,7 +165,7 @@ function missOfPiece(context: FindingContext, aim: Aim, i: number): NearMiss | n
     toward.distanceMm > 1e-9 ? pointsAt(tip, toward.x1, toward.y1) : pointsAt(tip, onLine.x2, onLine.y2);
   const apartMm = 4 * (half + pieces.half[i] + wallMm);
   const missed = pieces.centreline[i];
-  const isNear = (): boolean => isNearAlong(context, tip.ends[0] >> 1, places[0].s, missed, t, apartMm);
+  const isNear = (): boolean => isNearAlong(context, aim.at, { c: missed, s: t }, apartMm);
   if (!mayMiss(tip, pointsAtIt, isNear)) return null;
   // Where there is no gap and a join is near, fluid passes: whether the right way is the etched area's affair.
   if (!isAbove(gap.distanceMm, 0) && isNear()) return null;
@@ -171,15 +175,14 @@ function missOfPiece(context: FindingContext, aim: Aim, i: number): NearMiss | n
 }
 
 function missedPorts(context: FindingContext, aim: Aim): NearMiss[] {
-  const { tip, places, half, wallMm, limitMm, painted } = aim;
+  const { tip, half, wallMm, limitMm, painted } = aim;
   return portsNear(context, tip.x, tip.y, limitMm + half * Math.SQRT2).flatMap((port) => {
     const well = context.chip.ports[port];
     const { xMm, yMm, radiusMm } = well;
     const gap = painted.map((end) => gapOf(end, paintedHole(well))).reduce(nearer);
     if (!isBelow(gap.distanceMm, limitMm)) return [];
     const pointsAtIt = pointsAt(tip, xMm, yMm);
-    const isNear = (): boolean =>
-      isNearPort(context, tip.ends[0] >> 1, places[0].s, port, 4 * (2 * half + wallMm));
+    const isNear = (): boolean => isNearPort(context, aim.at, port, 4 * (2 * half + wallMm));
     if (!mayMiss(tip, pointsAtIt, isNear)) return [];
     const distanceTo = (x: number, y: number): number => Math.hypot(x - xMm, y - yMm);
     if (tip.kind === 'fan' && !recedes(context.network, aim, distanceTo)) return [];

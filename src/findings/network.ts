@@ -98,25 +98,22 @@ function noReference(context: FindingContext, part: FlowPart, number: number): F
   const idle = part.ports.find((port) => !drives(run, port));
   const outlet = driven.reduce((least, port) => (flowOf(run, port) < flowOf(run, least) ? port : least));
   const well = chip.ports[idle ?? outlet].name;
-  const cutOff = cutOffFix(context, number);
-  const rest = {
+  const [message, fix] =
+    part.status === 'flows-do-not-add-up'
+      ? [
+          `only flows are given (${given}) and they do not add up: ${show.text('flow', Math.abs(part.flowSumM3s))} more ${part.flowSumM3s > 0 ? 'goes in than comes out' : 'comes out than goes in'}, and nothing sets a pressure`,
+          `let one well take what is left: set ${well} to open, or give it a pressure or a head instead of a flow`,
+        ]
+      : [
+          `nothing sets a pressure: only flows are given (${given}); they add up, so the flows are known, but the pressures only up to a constant`,
+          `set one well to open, for example ${well}, or give one port a pressure or a head`,
+        ];
+  return toFinding('no-reference', 'blocker', {
+    message,
+    fix: cutOffFix(context, number) ?? fix,
     at: chip.ports[driven[0]],
     names: driven.map((port) => chip.ports[port].name),
     measure: { value: part.flowSumM3s, limit: 0, unit: 'm³/s' },
-  };
-  if (part.status === 'flows-do-not-add-up') {
-    return toFinding('no-reference', 'blocker', {
-      message: `only flows are given (${given}) and they do not add up: ${show.text('flow', Math.abs(part.flowSumM3s))} more ${part.flowSumM3s > 0 ? 'goes in than comes out' : 'comes out than goes in'}, and nothing sets a pressure`,
-      fix:
-        cutOff ??
-        `let one well take what is left: set ${well} to open, or give it a pressure or a head instead of a flow`,
-      ...rest,
-    });
-  }
-  return toFinding('no-reference', 'blocker', {
-    message: `nothing sets a pressure: only flows are given (${given}); they add up, so the flows are known, but the pressures only up to a constant`,
-    fix: cutOff ?? `set one well to open, for example ${well}, or give one port a pressure or a head`,
-    ...rest,
   });
 }
 

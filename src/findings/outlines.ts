@@ -17,22 +17,19 @@ export function isAllOutlines({ chip }: FindingContext): boolean {
 }
 
 /** Names of ports that an outline leads to: that no channel does follows from it. */
-export const portsOnOutlines: (context: FindingContext) => ReadonlySet<string> = oncePerContext(
-  (context) => new Set(outlinesOf(context).flatMap(({ ports }) => ports)),
+export const portsOnOutlines = oncePerContext(
+  (context): ReadonlySet<string> => new Set(outlinesOf(context).flatMap(({ ports }) => ports)),
 );
 
 /** Whether a channel ends on an outline at a place: that it meets nothing there follows from it. */
-export const endsOnOutline: (
-  context: FindingContext,
-) => (place: { readonly x: number; readonly y: number }) => boolean = oncePerContext((context) => {
-  const places = new Set(
-    outlinesOf(context).flatMap(({ ends }) => ends.map(({ xMm, yMm }) => `${xMm} ${yMm}`)),
-  );
-  return ({ x, y }) => places.has(`${x} ${y}`);
+export const endsOnOutline = oncePerContext((context) => {
+  const ends = outlinesOf(context).flatMap((outline) => outline.ends);
+  const places = new Set(ends.map(({ xMm, yMm }) => `${xMm} ${yMm}`));
+  return ({ x, y }: { readonly x: number; readonly y: number }): boolean => places.has(`${x} ${y}`);
 });
 
 /** Connected parts of the network that an outline would join to something. */
-export const partsOnOutlines: (context: FindingContext) => ReadonlySet<number> = oncePerContext((context) => {
+export const partsOnOutlines = oncePerContext((context): ReadonlySet<number> => {
   const parts = new Set<number>();
   const { network, flow, chip } = context;
   const outlines = outlinesOf(context);

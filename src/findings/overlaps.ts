@@ -6,7 +6,7 @@ import { onlyGrows } from './growth.ts';
 import { endMeets } from './meets.ts';
 import { lineOf } from './painted.ts';
 import { isAbove } from './rule.ts';
-import { extentOf, type Facing, groupStretches } from './stretches.ts';
+import { extentOf, type Facing, groupStretches, rangeOf } from './stretches.ts';
 
 /** Two centrelines, or two stretches of one, drawn along each other as if they were one channel. */
 export interface DoubleStroke extends Place {
@@ -41,20 +41,17 @@ interface Along extends Facing {
 }
 
 /** All double strokes of the drawing; cost linear in the near pairs. */
-export const doubleStrokes: (context: FindingContext) => readonly DoubleStroke[] = oncePerContext(
-  (context) => {
-    const { near } = context.network.trace;
-    const { pieces, pairCount, pairA, pairB, pairDistance } = near;
-    const found: Along[] = [];
-    for (let k = 0; k < pairCount; k++) addAlong(found, pieces, pairA[k], pairB[k], pairDistance[k]);
-    for (let i = 0; i + 1 < pieces.count; i++) {
-      if (pieces.centreline[i] === pieces.centreline[i + 1]) addRetraced(found, pieces, i);
-    }
-    return groupStretches(found, ({ narrowMm }) => narrowMm)
-      .map((group) => toDoubleStroke(context, pieces, group))
-      .filter((double) => double !== null);
-  },
-);
+export const doubleStrokes = oncePerContext((context): readonly DoubleStroke[] => {
+  const { pieces, pairCount, pairA, pairB, pairDistance } = context.network.trace.near;
+  const found: Along[] = [];
+  for (let k = 0; k < pairCount; k++) addAlong(found, pieces, pairA[k], pairB[k], pairDistance[k]);
+  for (let i = 0; i + 1 < pieces.count; i++) {
+    if (pieces.centreline[i] === pieces.centreline[i + 1]) addRetraced(found, pieces, i);
+  }
+  return groupStretches(found, ({ narrowMm }) => narrowMm).flatMap(
+    (group) => toDoubleStroke(context, pieces, group) ?? [],
+  );
+});
 
 function addAlong(into: Along[], pieces: Pieces, i: number, j: number, distanceMm: number): void {
   const narrowMm = 2 * Math.min(pieces.half[i], pieces.half[j]);
@@ -158,8 +155,7 @@ function withoutParting(
   // Else drawn to meet, but for the rounding of coordinates.
   const meets = [within(SAME_PLACE_MM), joinedEnds(), within(slack)].find(({ length }) => length > 0);
   if (meets === undefined) return { from: fromA, to: toA };
-  const first = meets.reduce((least, s) => Math.min(least, s));
-  const last = meets.reduce((most, s) => Math.max(most, s));
+  const [first, last] = rangeOf(meets);
   const after = samples.filter(({ s }) => s >= last).map(({ s, apart }) => ({ way: s - last, apart }));
   const before = samples.filter(({ s }) => s <= first).map(({ s, apart }) => ({ way: first - s, apart }));
   const partsAfter = !endsThere(toA) && onlyGrows(after, limitMm, slack);

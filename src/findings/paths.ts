@@ -236,36 +236,34 @@ function positionOf({ trace }: Network, side: number): number {
   return (side & 1) === 0 ? trace.arcFrom[side >> 1] : trace.arcTo[side >> 1];
 }
 
-/** Whether the way along the channels from one place on a centreline to another is within a length (mm). */
-export function isNearAlong(
-  context: FindingContext,
-  centreline: number,
-  s: number,
-  other: number,
-  t: number,
-  withinMm: number,
-): boolean {
-  const paths = channelPaths(context);
-  const arcA = paths.arcAt(centreline, s);
-  const arcB = paths.arcAt(other, t);
-  if (arcA < 0 || arcB < 0) return false;
-  return paths.routes(arcA, arcB, withinMm).some((route) => routeLength(route, s, t) <= withinMm);
+/** A position on a centreline, mm. */
+export interface OnCentreline {
+  readonly c: number;
+  readonly s: number;
 }
 
-/** Whether the way along the channels from a place on a centreline to a well is within a length (mm). */
+/** Whether the way along the channels from one place to another is within a length (mm). */
+export function isNearAlong(context: FindingContext, a: OnCentreline, b: OnCentreline, mm: number): boolean {
+  const paths = channelPaths(context);
+  const arcA = paths.arcAt(a.c, a.s);
+  const arcB = paths.arcAt(b.c, b.s);
+  if (arcA < 0 || arcB < 0) return false;
+  return paths.routes(arcA, arcB, mm).some((route) => routeLength(route, a.s, b.s) <= mm);
+}
+
+/** Whether the way along the channels from a place to a well is within a length (mm). */
 export function isNearPort(
   context: FindingContext,
-  centreline: number,
-  s: number,
+  { c, s }: OnCentreline,
   port: number,
-  withinMm: number,
+  mm: number,
 ): boolean {
   const { network } = context;
   const paths = channelPaths(context);
-  const arc = paths.arcAt(centreline, s);
+  const arc = paths.arcAt(c, s);
   if (arc < 0) return true;
   const wayTo = (side: number): number =>
-    paths.between(network.portNode[port], paths.sideVertex[side], withinMm) +
+    paths.between(network.portNode[port], paths.sideVertex[side], mm) +
     Math.abs(s - positionOf(network, side));
-  return Math.min(wayTo(2 * arc), wayTo(2 * arc + 1)) <= withinMm;
+  return Math.min(wayTo(2 * arc), wayTo(2 * arc + 1)) <= mm;
 }

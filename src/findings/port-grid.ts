@@ -1,5 +1,6 @@
 import type { Port, Sourced } from '../chip/types.ts';
 import { Bounds } from '../geometry/bounds.ts';
+import { linesAlong } from './closest.ts';
 import type { FindingContext } from './context.ts';
 import { isAbove, isBelow, lengthMeasure, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
@@ -120,17 +121,12 @@ function cornerGrids(rings: readonly Float64Array[]): Grid[] {
   let longest = 0;
   let ux = 1;
   let uy = 0;
-  for (const ring of rings) {
-    for (let k = 0; k + 3 < ring.length; k += 2) {
-      const dx = ring[k + 2] - ring[k];
-      const dy = ring[k + 3] - ring[k + 1];
-      const length = Math.hypot(dx, dy);
-      if (length > longest * (1 + 1e-9)) {
-        longest = length;
-        ux = dx / length;
-        uy = dy / length;
-      }
-    }
+  for (const [ax, ay, bx, by] of rings.flatMap(linesAlong)) {
+    const length = Math.hypot(bx - ax, by - ay);
+    if (length <= longest * (1 + 1e-9)) continue;
+    longest = length;
+    ux = (bx - ax) / length;
+    uy = (by - ay) / length;
   }
   const bounds = new Bounds();
   for (const ring of rings) {

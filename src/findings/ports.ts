@@ -1,8 +1,8 @@
 import type { Port, Sourced } from '../chip/types.ts';
-import { closePorts } from './close-ports.ts';
-import { type Closest, closestPoints, type Line, lineBetween, middleOf } from './closest.ts';
+import { closestPoints, type Line, lineBetween, middleOf } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 import { nearMisses } from './misses.ts';
+import { closePorts } from './near-ports.ts';
 import { portsOnOutlines } from './outlines.ts';
 import { gapToHole, lineOf } from './painted.ts';
 import { portGridFaults } from './port-grid.ts';
@@ -19,10 +19,11 @@ export const portRules: readonly Rule[] = [
   limitRule('port-grid', 'port_grid', 'portGridM', portGridFaults),
 ];
 
-function portCrowding({ chip }: FindingContext, limit: Sourced<number>): Finding[] {
+function portCrowding(context: FindingContext, limit: Sourced<number>): Finding[] {
+  const { ports } = context.chip;
   const limitMm = limit.value * 1e3;
-  return closePorts(chip.ports, limitMm).map(([p, q, gapMm]) => {
-    const [one, two] = [chip.ports[p], chip.ports[q]];
+  return closePorts(context, limitMm).map(([p, q, gapMm]) => {
+    const [one, two] = [ports[p], ports[q]];
     const apartMm = Math.hypot(two.xMm - one.xMm, two.yMm - one.yMm) || 1;
     const ux = (two.xMm - one.xMm) / apartMm;
     const uy = (two.yMm - one.yMm) / apartMm;
@@ -92,13 +93,11 @@ function loosePorts(context: FindingContext): Finding[] {
 /** The painted piece nearest to a well, among those whose boxes are nearest. */
 function nearestPiece({ chip, network }: FindingContext, port: Port) {
   const { index, pieces } = network.trace.near;
-  let best: { piece: number; gap: Closest } | null = null;
-  for (const piece of index.neighbors(port.xMm, port.yMm, 16)) {
-    const gap = gapToHole(chip, pieces, piece, port);
-    if (best === null || gap.distanceMm < Math.max(0, best.gap.distanceMm)) best = { piece, gap };
-  }
-  if (best === null) return null;
-  const { piece, gap } = best;
+  const near = index.neighbors(port.xMm, port.yMm, 16);
+  if (near.length === 0) return null;
+  const { piece, gap } = near
+    .map((i) => ({ piece: i, gap: gapToHole(chip, pieces, i, port) }))
+    .reduce((best, one) => (one.gap.distanceMm < Math.max(0, best.gap.distanceMm) ? one : best));
   const { name } = chip.channels[pieces.channel[piece]];
   return { name, gapMm: Math.max(0, gap.distanceMm), mark: lineBetween(gap) };
 }

@@ -35,21 +35,21 @@ export interface Wall {
 export function extentOf(
   group: readonly Facing[],
 ): Pick<Wall, 'centrelineA' | 'centrelineB' | 'fromA' | 'toA' | 'fromB' | 'toB'> {
-  const [{ a, b }] = group;
-  const onB = group.flatMap(({ otherFrom, otherTo }) => [otherFrom, otherTo]);
-  return {
-    centrelineA: a,
-    centrelineB: b,
-    fromA: group[0].from,
-    toA: mostOf(group.map(({ to }) => to)),
-    fromB: -mostOf(onB.map((s) => -s)),
-    toB: mostOf(onB),
-  };
+  const [{ a, b, from: fromA }] = group;
+  const [, toA] = rangeOf(group.map(({ to }) => to));
+  const [fromB, toB] = rangeOf(group.flatMap(({ otherFrom, otherTo }) => [otherFrom, otherTo]));
+  return { centrelineA: a, centrelineB: b, fromA, toA, fromB, toB };
 }
 
-/** A spread would run out of stack on a long group. */
-function mostOf(values: readonly number[]): number {
-  return values.reduce((most, value) => Math.max(most, value), Number.NEGATIVE_INFINITY);
+/** Least and most of some numbers; Infinity and −Infinity of none. */
+export function rangeOf(values: Iterable<number>): readonly [least: number, most: number] {
+  let least = Number.POSITIVE_INFINITY;
+  let most = Number.NEGATIVE_INFINITY;
+  for (const value of values) {
+    least = Math.min(least, value);
+    most = Math.max(most, value);
+  }
+  return [least, most];
 }
 
 /**

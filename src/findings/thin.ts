@@ -54,9 +54,7 @@ export function findThinWalls(
     const i = near.pairA[k];
     const j = near.pairB[k];
     const limitMm = limitOf(pieces.channel[i], pieces.channel[j]);
-    const faced = Number.isNaN(limitMm)
-      ? null
-      : facedWalls(context, pieces, i, j, near.pairDistance[k], limitMm);
+    const faced = Number.isNaN(limitMm) ? null : facedWalls(context, near, k, limitMm);
     if (faced !== null) addThinStretches(stretches, context, faced);
   }
   return groupStretches(stretches, ({ faced }) => faced.apartMm / 2)
@@ -68,41 +66,43 @@ export function findThinWalls(
 function isNoWall(context: FindingContext, group: readonly ThinStretch[]): boolean {
   const first = group[0];
   const last = group.reduce((most, stretch) => (stretch.to > most.to ? stretch : most), first);
+  const start = { stretch: first, s: first.from, t: first.otherFrom, way: first.wayFrom };
+  const end = { stretch: last, s: last.to, t: last.otherTo, way: last.wayTo };
   return (
-    (isInThird(context, first, first.from, first.otherFrom) &&
-      isInThird(context, last, last.to, last.otherTo)) ||
-    partsFrom(context, group, first, first.from, first.otherFrom, first.wayFrom) ||
-    partsFrom(context, group, last, last.to, last.otherTo, last.wayTo)
+    (isInThird(context, start) && isInThird(context, end)) ||
+    partsFrom(context, group, start) ||
+    partsFrom(context, group, end)
   );
 }
 
-function partsFrom(
-  context: FindingContext,
-  group: readonly ThinStretch[],
-  stretch: ThinStretch,
-  s: number,
-  t: number,
-  way: number,
-): boolean {
+/** Where a thin wall begins or ends: positions on a and b, and the way along the channels between them, mm. */
+interface WallEnd {
+  readonly stretch: ThinStretch;
+  readonly s: number;
+  readonly t: number;
+  readonly way: number;
+}
+
+function partsFrom(context: FindingContext, group: readonly ThinStretch[], end: WallEnd): boolean {
+  const { apartMm } = end.stretch.faced;
   const samples = group.flatMap(({ from, to, gapFrom, gapTo, gapMm, thinnestAt }) => [
-    { way: Math.abs(from - s), apart: gapFrom },
-    { way: Math.abs(thinnestAt - s), apart: gapMm },
-    { way: Math.abs(to - s), apart: gapTo },
+    { way: Math.abs(from - end.s), apart: gapFrom },
+    { way: Math.abs(thinnestAt - end.s), apart: gapMm },
+    { way: Math.abs(to - end.s), apart: gapTo },
   ]);
-  const { apartMm } = stretch.faced;
   if (!onlyGrows(samples, apartMm, context.chip.joinWithinMm)) return false;
-  if (isInThird(context, stretch, s, t)) return true;
+  if (isInThird(context, end)) return true;
   // A group that does not go down to the least way (give or take the jump from one chord of a curve to the next) begins
   // further along: a stretch of its own.
   const farMm = samples.reduce((most, sample) => Math.max(most, sample.way), 0);
-  return way <= 1.25 * apartMm && partInProportion(context, stretch, s, t, farMm);
+  return end.way <= 1.25 * apartMm && partInProportion(context, end, farMm);
 }
 
 /**
  * Whether both sides lie in one third strip there that both are joined to: two feeders that end side by side in a chamber
  * part at its wall, however far apart their nodes are on its centreline, and in it there is no wall between them.
  */
-function isInThird(context: FindingContext, { a, b, faced }: ThinStretch, s: number, t: number): boolean {
+function isInThird(context: FindingContext, { stretch: { a, b, faced }, s, t }: WallEnd): boolean {
   const { network } = context;
   return liesInThird(context, faced.i, faced.j, pointOn(network, a, s), pointOn(network, b, t));
 }
@@ -112,13 +112,9 @@ function isInThird(context: FindingContext, { a, b, faced }: ThinStretch, s: num
  * ladder, they reach their distance at once and keep it. So the distance is compared with that at half the way; of arms
  * that part along a tangent where they have come apart at all, at most `farMm` further on.
  */
-function partInProportion(
-  context: FindingContext,
-  { a, b, faced }: ThinStretch,
-  s: number,
-  t: number,
-  farMm: number,
-): boolean {
+function partInProportion(context: FindingContext, end: WallEnd, farMm: number): boolean {
+  const { stretch, s, t } = end;
+  const { a, b, faced } = stretch;
   const { network } = context;
   const paths = channelPaths(context);
   const route = shortest(paths.routes(paths.arcAt(a, s), paths.arcAt(b, t), faced.apartMm), s, t);
@@ -227,14 +223,11 @@ interface FacedWalls {
 }
 
 /** Null where the two are no wall, whatever else is near. */
-function facedWalls(
-  { chip }: FindingContext,
-  pieces: Pieces,
-  i: number,
-  j: number,
-  distanceMm: number,
-  limitMm: number,
-): FacedWalls | null {
+function facedWalls({ chip }: FindingContext, near: Nearness, k: number, limitMm: number): FacedWalls | null {
+  const { pieces } = near;
+  const i = near.pairA[k];
+  const j = near.pairB[k];
+  const distanceMm = near.pairDistance[k];
   const { half, start, length } = pieces;
   const halves = half[i] + half[j];
   // The relative slack of a limit, rounding of coordinates where the limit is nought, and what curves may lie beside their

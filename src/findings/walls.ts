@@ -2,11 +2,11 @@ import { minWallMm } from '../chip/limits.ts';
 import type { Channel, Sourced } from '../chip/types.ts';
 import { findNearPairs, type Nearness } from '../geometry/near.ts';
 import { grouped, remembered } from '../groups.ts';
-import { closePorts } from './close-ports.ts';
 import { middleOf } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 import { unjoinedAreas } from './etched-area.ts';
 import { replacesWall } from './misses.ts';
+import { closePorts } from './near-ports.ts';
 import { doubleStrokes } from './overlaps.ts';
 import { pairKey } from './pairs.ts';
 import { found, isBelow, lengthMeasure, notRun, type Rule, toFinding, withoutLimit } from './rule.ts';
@@ -193,8 +193,9 @@ function wellFindings(context: FindingContext): Finding[] {
 }
 
 /** Two wells that overlap are one open hole; they are one node only where a centreline passes from one into the other. */
-function mergedWells({ chip, network }: FindingContext): Finding[] {
-  return closePorts(chip.ports, 0).flatMap(([p, q, gapMm]) => {
+function mergedWells(context: FindingContext): Finding[] {
+  const { chip, network } = context;
+  return closePorts(context, 0).flatMap(([p, q, gapMm]) => {
     if (-gapMm <= chip.joinWithinMm || network.portNode[p] === network.portNode[q]) return [];
     const [one, two] = [chip.ports[p], chip.ports[q]];
     const share = (one.radiusMm + gapMm / 2) / Math.hypot(two.xMm - one.xMm, two.yMm - one.yMm);

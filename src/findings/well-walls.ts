@@ -93,6 +93,6 @@ function isMeant(context: FindingContext, port: number, { centreline, from, to, 
   const { network } = context;
   return (
     hasPlaceOn(network, network.portNode[port], centreline, from, to) ||
-    [from, (from + to) / 2, to].every((s) => isNearPort(context, centreline, s, port, apartMm))
+    [from, (from + to) / 2, to].every((s) => isNearPort(context, { c: centreline, s }, port, apartMm))
   );
 }
