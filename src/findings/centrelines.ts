@@ -2,7 +2,7 @@ import type { Channel } from '../chip/types.ts';
 import type { Network } from '../network/types.ts';
 import type { Line, Place } from './closest.ts';
 
-export interface DirectedPlace extends Place {
+interface DirectedPlace extends Place {
   /** Unit vector along the drawn direction. */
   readonly ux: number;
   readonly uy: number;

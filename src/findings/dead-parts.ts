@@ -23,10 +23,10 @@ export interface DeadPart {
  * undriven: held at one pressure all over, cut off from what drives the chip.
  * unheld: only flows are given, cut off from what is held or open.
  */
-export type DeadKind = 'alone' | 'undriven' | 'unheld';
+type DeadKind = 'alone' | 'undriven' | 'unheld';
 
 /** The dead parts of the chip, by number; none while nothing is solved. Cost: linear in the ports and parts. */
-export const deadParts: (context: FindingContext) => readonly DeadPart[] = oncePerContext((context) => {
+export const deadParts = oncePerContext((context): readonly DeadPart[] => {
   const { run, flow } = context;
   if (flow === null) return [];
   const drives = drivesOf(run);

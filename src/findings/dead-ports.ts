@@ -16,13 +16,11 @@ export function deadPorts(context: FindingContext): Finding[] {
 }
 
 /** The gap nearest to each dead part; null where there is nothing else, or nothing that closing a gap could lead to. */
-export const gapOfDeadPart: (context: FindingContext) => ReadonlyMap<number, Gap | null> = oncePerContext(
-  (context) => {
-    const gapOf = (part: number): Gap | null =>
-      hasElsewhere(context, part) ? nearestGap(context, part) : null;
-    return new Map(deadParts(context).map(({ part }) => [part, gapOf(part)]));
-  },
-);
+export const gapOfDeadPart = oncePerContext((context): ReadonlyMap<number, Gap | null> => {
+  const gapOf = (part: number): Gap | null =>
+    hasElsewhere(context, part) ? nearestGap(context, part) : null;
+  return new Map(deadParts(context).map(({ part }) => [part, gapOf(part)]));
+});
 
 /** Whether another part has a port that fluid may pass; one without a condition may yet be given one. */
 function hasElsewhere({ run, flow }: FindingContext, part: number): boolean {

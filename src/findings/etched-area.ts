@@ -30,7 +30,7 @@ import { coveredLength, extentOf, type Facing, groupStretches, rangeOf, type Wal
  * Cost: linear in the near pairs. Nearly all of them meet in a node at the place where they are nearest; only the rest is
  * looked at in outline.
  */
-export const unjoinedAreas: (context: FindingContext) => readonly Wall[] = oncePerContext((context) => {
+export const unjoinedAreas = oncePerContext((context): readonly Wall[] => {
   const { pieces } = context.network.trace.near;
   const unjoined = overlapsOf(context)
     .all()

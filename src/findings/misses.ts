@@ -32,7 +32,7 @@ export interface NearMiss {
 }
 
 /** All near misses, at most one for each tip; two tips that miss each other are one. */
-export const nearMisses: (context: FindingContext) => readonly NearMiss[] = oncePerContext((context) => {
+export const nearMisses = oncePerContext((context): readonly NearMiss[] => {
   const misses: NearMiss[] = [];
   const byTip = new Map<number, NearMiss>();
   const tipAt = tipOfEnd(context);

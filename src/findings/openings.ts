@@ -10,8 +10,8 @@ export interface Opening {
 }
 
 /** Reaches at each node, as 2·reach + (1 at the reach's `to` end). */
-export const reachesAtNodes: (context: FindingContext) => Groups = oncePerContext(
-  ({ network: { nodeCount, reachFrom, reachTo } }) => sidesByNode(nodeCount, reachFrom, reachTo),
+export const reachesAtNodes = oncePerContext(
+  ({ network }): Groups => sidesByNode(network.nodeCount, network.reachFrom, network.reachTo),
 );
 
 /**

@@ -9,7 +9,7 @@ import { isAbove } from './rule.ts';
 import { extentOf, type Facing, groupStretches, rangeOf } from './stretches.ts';
 
 /** Two centrelines, or two stretches of one, drawn along each other as if they were one channel. */
-export interface DoubleStroke extends Place {
+interface DoubleStroke extends Place {
   /** Centrelines. */
   readonly a: number;
   readonly b: number;

@@ -3,7 +3,7 @@ import { channelOf } from './centrelines.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 
 /** Which connected part of the network each drawn thing belongs to; −1 for none. */
-export interface PartsOnDrawing {
+interface PartsOnDrawing {
   readonly ofCentreline: Int32Array;
   readonly ofPort: Int32Array;
   /** Pieces of part p are pieceOf[firstPiece[p]] … pieceOf[firstPiece[p + 1] − 1]. */
@@ -12,27 +12,25 @@ export interface PartsOnDrawing {
 }
 
 /** Empty while nothing is solved. A centreline that is all open well, or left out whole, belongs to no part. */
-export const partsOnDrawing: (context: FindingContext) => PartsOnDrawing = oncePerContext(
-  ({ network, flow }) => {
-    const { near, firstArc, arcReach } = network.trace;
-    const { pieces } = near;
-    const ofCentreline = new Int32Array(pieces.centrelineCount).fill(-1);
-    if (flow !== null) {
-      for (let c = 0; c < pieces.centrelineCount; c++) {
-        if (firstArc[c + 1] > firstArc[c])
-          ofCentreline[c] = flow.nodePart[network.reachFrom[arcReach[firstArc[c]]]];
-      }
+export const partsOnDrawing = oncePerContext(({ network, flow }): PartsOnDrawing => {
+  const { near, firstArc, arcReach } = network.trace;
+  const { pieces } = near;
+  const ofCentreline = new Int32Array(pieces.centrelineCount).fill(-1);
+  if (flow !== null) {
+    for (let c = 0; c < pieces.centrelineCount; c++) {
+      if (firstArc[c + 1] > firstArc[c])
+        ofCentreline[c] = flow.nodePart[network.reachFrom[arcReach[firstArc[c]]]];
     }
-    const ofPiece = pieces.centreline.map((c) => ofCentreline[c]);
-    const { first: firstPiece, member: pieceOf } = byGroup(flow?.parts.length ?? 0, ofPiece);
-    return {
-      ofCentreline,
-      ofPort: Int32Array.from(network.portNode, (node) => (flow === null ? -1 : flow.nodePart[node])),
-      firstPiece,
-      pieceOf,
-    };
-  },
-);
+  }
+  const ofPiece = pieces.centreline.map((c) => ofCentreline[c]);
+  const { first: firstPiece, member: pieceOf } = byGroup(flow?.parts.length ?? 0, ofPiece);
+  return {
+    ofCentreline,
+    ofPort: Int32Array.from(network.portNode, (node) => (flow === null ? -1 : flow.nodePart[node])),
+    firstPiece,
+    pieceOf,
+  };
+});
 
 /** A channel or a well, and the connected part that it belongs to. */
 export interface PartMember {

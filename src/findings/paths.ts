@@ -12,7 +12,7 @@ import { type FindingContext, oncePerContext } from './context.ts';
  * are asked for, so each question is a search of a small neighbourhood (E. W. Dijkstra, Numer. Math. 1 (1959) 269), kept
  * for the next one.
  */
-export class ChannelPaths {
+class ChannelPaths {
   private readonly network: Network;
   /** Vertex at each arc's start and end: 2a, 2a + 1. */
   readonly sideVertex: Int32Array;

@@ -56,7 +56,7 @@ const channelsAtPorts = oncePerContext(({ network }): readonly number[][] => {
 });
 
 /** Wells that no channel comes to, and that no end just misses. */
-export const loosePortSet: (context: FindingContext) => ReadonlySet<number> = oncePerContext((context) => {
+export const loosePortSet = oncePerContext((context): ReadonlySet<number> => {
   const { chip, network } = context;
   const missed = new Set(nearMisses(context).map(({ port }) => port));
   const channels = channelsAtPorts(context);

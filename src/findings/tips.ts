@@ -1,7 +1,7 @@
 import { endPiece } from '../geometry/pieces.ts';
 import { grouped } from '../groups.ts';
 import type { Network } from '../network/types.ts';
-import { type FindingContext, oncePerContext } from './context.ts';
+import { oncePerContext } from './context.ts';
 
 /**
  * A place where a part ends dead: one channel end that meets nothing, or a bundle of ends that meet only each other.
@@ -28,12 +28,12 @@ const COS_ONE_SIDE = Math.cos(Math.PI / 8);
 const LEAST_MEAN = 0.2;
 
 /** All tips of the drawing, in the order of their first ends. Cost: linear in the ends. */
-export const tipsOf: (context: FindingContext) => readonly Tip[] = oncePerContext(({ network }) =>
+export const tipsOf = oncePerContext(({ network }): readonly Tip[] =>
   endGroups(network).flatMap((ends) => toTip(network, ends) ?? []),
 );
 
 /** Tip of each end, −1 for an end at none. */
-export const tipOfEnd: (context: FindingContext) => Int32Array = oncePerContext((context) => {
+export const tipOfEnd = oncePerContext((context): Int32Array => {
   const of = new Int32Array(context.network.trace.endFate.length).fill(-1);
   tipsOf(context).forEach(({ ends }, tip) => {
     for (const end of ends) of[end] = tip;

@@ -8,7 +8,7 @@ import { gapToHole, lineOf } from './painted.ts';
 import { isNearPort } from './paths.ts';
 
 /** Too little material between a channel and a well that it does not meet there. */
-export interface WellWall {
+interface WellWall {
   readonly channel: number;
   readonly port: number;
   readonly gapMm: number;
