@@ -6,6 +6,7 @@ import { buildReport, type Report } from './report/report.ts';
 import { nearest } from './runsheet/nearest.ts';
 import { parseRunSheet } from './runsheet/parse.ts';
 import { quote } from './runsheet/quote.ts';
+import { lineAt } from './runsheet/tree.ts';
 import type { RunSheet } from './runsheet/types.ts';
 import { type Pace, type SpreadOptions, spreadOf, whyNoSpread } from './spread/spread.ts';
 import type { Spread } from './spread/types.ts';
@@ -117,7 +118,7 @@ async function spreadPart(
   if (asked === undefined || sheet === null || tolerances === null) return {};
   const idle = whyNoSpread(analysis, tolerances);
   if (idle !== null) {
-    const line = sheet.lineOf(['tolerances']);
+    const line = lineAt(sheet.tree, ['tolerances']);
     throw new InputError(
       line === null ? sheet.file : `${sheet.file}:${line}`,
       `tolerances: nothing in them moves anything on this chip${inCase(name)}${idle.length === 0 ? '' : ` (${idle.slice(0, 3).join('; ')})`}; ${TOLERANCES_EXAMPLE}`,

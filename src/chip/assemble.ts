@@ -99,6 +99,7 @@ export function assembleChip({ layout, sheet: written, file }: ChipInput): Assem
     planes: finder.planes,
     layers: withDrawnDepths(finder.layers, channels),
     channels,
+    sections: drawn.sections,
     ports: ports.ports,
     obstacles,
     edge: edge === null ? null : inMm(edge, unitMm),

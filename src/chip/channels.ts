@@ -1,14 +1,17 @@
 import { InputError } from '../errors.ts';
 import { scaledCurves } from '../geometry/curve.ts';
 import type { Centreline, Stroke } from '../layout/types.ts';
+import type { DuctForm } from '../physics/duct.ts';
 import { isotropicSection } from '../physics/section.ts';
 import { quote } from '../runsheet/quote.ts';
 import { depthOf, type LayerFinder } from './layers.ts';
+import { SectionList } from './sections.ts';
 import type { Channel, ReadingFault } from './types.ts';
 import { UniqueNames } from './unique-names.ts';
 
 export interface ChannelReading {
   readonly channels: readonly Channel[];
+  readonly sections: readonly DuctForm[];
   readonly faults: readonly ReadingFault[];
   /** Drawn names of all strokes read, also of those without a width. */
   readonly drawnNames: ReadonlySet<string>;
@@ -31,6 +34,7 @@ export function readChannels(
   for (const { name } of strokes) if (name !== null) drawnNames.add(name);
   const names = new UniqueNames(drawnNames);
   const channels: Channel[] = [];
+  const sections = new SectionList();
   const faults: ReadingFault[] = [];
   for (let i = 0; i < strokes.length; i++) {
     const stroke = strokes[i]!;
@@ -51,7 +55,7 @@ export function readChannels(
     const drawnWidthMm = withoutRounding(stroke.width * unitMm);
     const depthMm = withoutRounding(depthM * 1000);
     refuseHairline(name, drawnWidthMm, depthMm, layer.profile, file);
-    const { ductWidthMm, stripHalfWidthMm } = sectionOf(drawnWidthMm, depthMm, layer.profile);
+    const { ductWidthMm, stripHalfWidthMm } = widthsOf(drawnWidthMm, depthMm, layer.profile);
     channels.push({
       name,
       drawnName: stroke.name,
@@ -64,13 +68,14 @@ export function readChannels(
       depthMm,
       depthOrigin: origin,
       profile: layer.profile,
+      section: sections.indexOf(layer.profile, ductWidthMm, depthMm),
       linecap: stroke.linecap,
       centrelines: unitMm === 1 ? stroke.centrelines : stroke.centrelines.map((line) => inMm(line, unitMm)),
       disguises: stroke.disguises,
       dataChannel: stroke.dataChannel,
     });
   }
-  return { channels, faults, drawnNames, isMade: (name) => names.isMade(name) };
+  return { channels, sections: sections.forms, faults, drawnNames, isMade: (name) => names.isMade(name) };
 }
 
 function startOf(stroke: Stroke, unitMm: number): { readonly xMm: number; readonly yMm: number } {
@@ -108,13 +113,13 @@ function refuseHairline(
   );
 }
 
-interface Section {
+interface Widths {
   readonly ductWidthMm: number;
   readonly stripHalfWidthMm: number;
 }
 
 /** The strip of a channel of unknown depth is taken as drawn, so that joins can still be found. */
-function sectionOf(drawnWidthMm: number, depthMm: number, profile: Channel['profile']): Section {
+function widthsOf(drawnWidthMm: number, depthMm: number, profile: Channel['profile']): Widths {
   if (profile === 'rectangle') return { ductWidthMm: drawnWidthMm, stripHalfWidthMm: drawnWidthMm / 2 };
   if (Number.isNaN(depthMm)) return { ductWidthMm: Number.NaN, stripHalfWidthMm: drawnWidthMm / 2 };
   // The section is made of lengths alone, so millimetres serve as well as metres.

@@ -6,6 +6,7 @@ import {
   waterViscosity,
 } from '../physics/fluid.ts';
 import { type KeyPath, pathText } from '../runsheet/path-text.ts';
+import { lineAt } from '../runsheet/tree.ts';
 import type { FluidSpec, RunSheet } from '../runsheet/types.ts';
 import { refuse } from './complain.ts';
 import { DEFAULT_TEMPERATURE_K } from './defaults.ts';
@@ -28,7 +29,7 @@ export function resolveFluid(sheet: RunSheet | null): Fluid {
       const at = piece.temperatureK;
       // One piece may be written without a list.
       const path =
-        sheet.lineOf(['ports', name, 'tubing', i]) === null
+        lineAt(sheet.tree, ['ports', name, 'tubing', i]) === null
           ? ['ports', name, 'tubing']
           : ['ports', name, 'tubing', i];
       known(sheet, [...path, 'temperature'], () => viscosityAt(fluid, at));

@@ -1,4 +1,4 @@
-import { remembered } from '../groups.ts';
+import { remembered } from '../by-key.ts';
 import type { Centreline } from '../layout/types.ts';
 import { DEFAULT_HAIRLINE_MM } from './defaults.ts';
 import { indexRings, type RingIndex } from './rings.ts';

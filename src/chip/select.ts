@@ -1,4 +1,4 @@
-import { remembered } from '../groups.ts';
+import { remembered } from '../by-key.ts';
 import type { Hole, Ignored, Layout, LayoutItem, Outline, Stroke } from '../layout/types.ts';
 import { isPattern, layerKey, matches } from '../runsheet/names.ts';
 import type { RunSheet } from '../runsheet/types.ts';

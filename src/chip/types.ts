@@ -1,5 +1,6 @@
 import type { Curve } from '../geometry/curve.ts';
 import type { Centreline } from '../layout/types.ts';
+import type { DuctForm } from '../physics/duct.ts';
 import type {
   AcceptEntry,
   ChannelEntry,
@@ -67,6 +68,8 @@ export interface Channel {
   readonly depthMm: number;
   readonly depthOrigin: Origin;
   readonly profile: 'rectangle' | 'isotropic';
+  /** Index into Chip.sections; −1 where the width or depth is unknown. */
+  readonly section: number;
   readonly linecap: 'butt' | 'round' | 'square';
   /** In mm (drawing coordinates × unit), y down. */
   readonly centrelines: readonly Centreline[];
@@ -187,6 +190,8 @@ export interface Chip {
   readonly layers: readonly ChipLayer[];
   /** Channels that have a width; unsized strokes are faults only. */
   readonly channels: readonly Channel[];
+  /** Each distinct profile, duct width and depth of the channels once. */
+  readonly sections: readonly DuctForm[];
   readonly ports: readonly Port[];
   readonly obstacles: readonly Obstacle[];
   readonly edge: ChipEdge | null;

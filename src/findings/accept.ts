@@ -1,5 +1,5 @@
+import { grouped } from '../by-key.ts';
 import { acceptedName } from '../chip/accept.ts';
-import { grouped } from '../groups.ts';
 import { UNACCEPTABLE_RULES } from '../runsheet/measures.ts';
 import { measureText, type Show } from '../runsheet/shown.ts';
 import type { AcceptEntry } from '../runsheet/types.ts';

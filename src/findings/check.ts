@@ -1,5 +1,5 @@
+import { grouped } from '../by-key.ts';
 import { madeUpNames } from '../chip/accept.ts';
-import { grouped } from '../groups.ts';
 import type { AcceptEntry } from '../runsheet/types.ts';
 import { acceptFindings } from './accept.ts';
 import type { FindingContext } from './context.ts';

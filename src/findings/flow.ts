@@ -71,7 +71,7 @@ const NO_FLOW_SHARE = 1e-9;
 function onTheWayToADeadEnd(context: FindingContext): Uint8Array {
   const { network, run } = context;
   const { nodeCount, reachCount, reachFrom, reachTo, nodePort } = network;
-  const { first, member } = reachesAtNodes(context);
+  const { first, item } = reachesAtNodes(context);
   const left = new Int32Array(nodeCount);
   for (let n = 0; n < nodeCount; n++) left[n] = first[n + 1] - first[n];
   const isDead = new Uint8Array(reachCount);
@@ -85,7 +85,7 @@ function onTheWayToADeadEnd(context: FindingContext): Uint8Array {
   for (let n = 0; n < nodeCount; n++) if (isLeaf(n)) leaves.push(n);
   for (let node = leaves.pop(); node !== undefined; node = leaves.pop()) {
     for (let k = first[node]; k < first[node + 1]; k++) {
-      const reach = member[k] >> 1;
+      const reach = item[k] >> 1;
       if (isDead[reach] === 1) continue;
       isDead[reach] = 1;
       for (const end of [reachFrom[reach], reachTo[reach]]) {

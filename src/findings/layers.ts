@@ -1,4 +1,4 @@
-import { grouped } from '../groups.ts';
+import { grouped } from '../by-key.ts';
 import { type LayerCrossing, layerCrossings } from '../network/layer-crossings.ts';
 import { layerKey } from '../runsheet/names.ts';
 import { channelOf } from './centrelines.ts';

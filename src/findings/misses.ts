@@ -1,6 +1,6 @@
+import { grouped } from '../by-key.ts';
 import { minWallMm } from '../chip/limits.ts';
 import { distanceToPiece } from '../geometry/on-piece.ts';
-import { grouped } from '../groups.ts';
 import type { Network } from '../network/types.ts';
 import { type Closest, closestPoints, type Line, lineBetween, nearer } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';

@@ -1,5 +1,6 @@
+import { grouped } from '../by-key.ts';
 import type { Run } from '../chip/types.ts';
-import { byGroup, grouped } from '../groups.ts';
+import { itemsOf, toGroups } from '../groups.ts';
 import type { FlowPart, FlowState } from '../solve/types.ts';
 import type { FindingContext } from './context.ts';
 import { deadPorts, gapOfDeadPart, gapText } from './dead-ports.ts';
@@ -36,10 +37,10 @@ function ifAnyPortIsSet(
 function strayChannels(context: FindingContext, flow: FlowState): Finding[] {
   const { chip, run, network } = context;
   const partOfReach = network.reachFrom.map((node) => flow.nodePart[node]);
-  const { first, member } = byGroup(flow.parts.length, partOfReach);
+  const byPart = toGroups(flow.parts.length, partOfReach);
   const onOutlines = partsOnOutlines(context);
   return flow.parts.flatMap((part, p) => {
-    const reaches = member.subarray(first[p], first[p + 1]);
+    const reaches = itemsOf(byPart, p);
     if (onOutlines.has(p) || reaches.length === 0 || part.ports.some((port) => drives(run, port))) return [];
     const drawn = new Set(reaches.map((reach) => network.reachChannel[reach]));
     const channels = Array.from(drawn, (channel) => chip.channels[channel].name);

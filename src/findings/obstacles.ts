@@ -1,5 +1,5 @@
+import { grouped } from '../by-key.ts';
 import type { Obstacle } from '../chip/types.ts';
-import { grouped } from '../groups.ts';
 import type { Place } from './closest.ts';
 import type { FindingContext } from './context.ts';
 import { type Rule, rule, toFinding } from './rule.ts';

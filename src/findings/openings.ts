@@ -20,7 +20,7 @@ export const reachesAtNodes = oncePerContext(
  */
 export function openingsAt(
   { network, chip, flow }: FindingContext,
-  { first, member }: Groups,
+  { first, item }: Groups,
   wide: number,
   end: 'from' | 'to',
   stream: 'in' | 'out',
@@ -30,8 +30,8 @@ export function openingsAt(
   const widthMm = chip.channels[network.reachChannel[wide]].ductWidthMm;
   const openings: Opening[] = [];
   for (let k = first[node]; k < first[node + 1]; k++) {
-    const feeder = member[k] >> 1;
-    const isAtTo = (member[k] & 1) === 1;
+    const feeder = item[k] >> 1;
+    const isAtTo = (item[k] & 1) === 1;
     const feederMm = chip.channels[network.reachChannel[feeder]].ductWidthMm;
     const towardsNode = isAtTo ? flow.reachFlow[feeder] : -flow.reachFlow[feeder];
     const carries = stream === 'in' ? towardsNode > 0 : towardsNode < 0;

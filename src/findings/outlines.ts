@@ -1,5 +1,5 @@
+import { grouped } from '../by-key.ts';
 import type { OutlineFault, OutlineReason } from '../chip/types.ts';
-import { grouped } from '../groups.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 import { type Rule, rule, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';

@@ -1,4 +1,4 @@
-import { byGroup } from '../groups.ts';
+import { toGroups } from '../groups.ts';
 import { channelOf } from './centrelines.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 
@@ -23,7 +23,7 @@ export const partsOnDrawing = oncePerContext(({ network, flow }): PartsOnDrawing
     }
   }
   const ofPiece = pieces.centreline.map((c) => ofCentreline[c]);
-  const { first: firstPiece, member: pieceOf } = byGroup(flow?.parts.length ?? 0, ofPiece);
+  const { first: firstPiece, item: pieceOf } = toGroups(flow?.parts.length ?? 0, ofPiece);
   return {
     ofCentreline,
     ofPort: Int32Array.from(network.portNode, (node) => (flow === null ? -1 : flow.nodePart[node])),

@@ -1,6 +1,7 @@
+import { grouped } from '../by-key.ts';
 import { placeOn } from '../geometry/on-piece.ts';
 import { pieceAt } from '../geometry/pieces.ts';
-import { byGroup, type Groups, grouped } from '../groups.ts';
+import { type Groups, itemsOf, toGroups } from '../groups.ts';
 import type { Network } from '../network/types.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 
@@ -32,30 +33,25 @@ class ChannelPaths {
     const { sideVertex, vertexCount } = toVertices(network);
     this.sideVertex = sideVertex;
     this.vertexCount = vertexCount;
-    this.sides = byGroup(vertexCount, sideVertex);
+    this.sides = toGroups(vertexCount, sideVertex);
     const { firstPlace, placeCentreline } = trace;
     const inWells = new Int32Array(placeCentreline.length).fill(-1);
     for (let node = 0; node < network.nodeCount; node++) {
       if (nodePort[node] < 0) continue;
       for (let k = firstPlace[node]; k < firstPlace[node + 1]; k++) inWells[k] = placeCentreline[k];
     }
-    this.wells = byGroup(trace.near.pieces.centrelineCount, inWells);
+    this.wells = toGroups(trace.near.pieces.centrelineCount, inWells);
   }
 
   /** Sides of arcs that come to a vertex. */
   sidesAt(vertex: number): Int32Array {
-    const { first, member } = this.sides;
-    return member.subarray(first[vertex], first[vertex + 1]);
+    return itemsOf(this.sides, vertex);
   }
 
   /** Whether position s of a centreline lies in an open well. */
   isInWell(centreline: number, s: number): boolean {
     const { placeFrom, placeTo } = this.network.trace;
-    const { first, member } = this.wells;
-    for (let k = first[centreline]; k < first[centreline + 1]; k++) {
-      if (s > placeFrom[member[k]] && s < placeTo[member[k]]) return true;
-    }
-    return false;
+    return itemsOf(this.wells, centreline).some((k) => s > placeFrom[k] && s < placeTo[k]);
   }
 
   /** The arc that holds position s, or the one nearest to it; −1 when the centreline has none (all of it open well). */

@@ -1,16 +1,15 @@
-import { byGroup } from '../groups.ts';
+import { itemsOf, toGroups } from '../groups.ts';
 import { reachName } from '../network/names.ts';
 import type { Network } from '../network/types.ts';
 import type { Place } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 import type { Finding } from './types.ts';
 
-const byChannel = oncePerContext(({ network, chip }) => byGroup(chip.channels.length, network.reachChannel));
+const byChannel = oncePerContext(({ network, chip }) => toGroups(chip.channels.length, network.reachChannel));
 
 /** The reaches of one channel, in drawn order. */
 export function reachesOf(context: FindingContext, channel: number): Int32Array {
-  const { first, member } = byChannel(context);
-  return member.subarray(first[channel], first[channel + 1]);
+  return itemsOf(byChannel(context), channel);
 }
 
 /** The worst reach of a channel by some measure, and how many reaches are at fault. */

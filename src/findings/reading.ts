@@ -1,7 +1,7 @@
+import { grouped } from '../by-key.ts';
 import { OBSTACLE_KIND } from '../chip/defaults.ts';
 import { sizesByPixel } from '../chip/pixel-sizes.ts';
 import type { Port, ReadingFault } from '../chip/types.ts';
-import { grouped } from '../groups.ts';
 import { UNUSABLE_KEYS } from '../runsheet/names.ts';
 import { middleOfChannel } from './centrelines.ts';
 import type { FindingContext } from './context.ts';

@@ -1,10 +1,11 @@
+import { roomLengthM } from '../network/lengths.ts';
 import { nodeName, reachName } from '../network/names.ts';
 import { NODE_KINDS } from '../network/types.ts';
 import { CURVED_FLOW_DEAN, deanNumber } from '../physics/dean.ts';
 import { entranceLength, spreadingLength } from '../physics/entrance.ts';
 import { formatNumber } from '../runsheet/shown.ts';
+import { reachState } from '../solve/reach-state.ts';
 import type { FindingContext } from './context.ts';
-import { reachState, roomLengthM } from './ducts.ts';
 import { type Opening, openingsAt, reachesAtNodes } from './openings.ts';
 import { alongReach, middleOfReach, othersText, reachesOf, reachNames, worstReach } from './reaches.ts';
 import { found, isAbove, isBelow, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
@@ -121,7 +122,7 @@ function developingFlow(context: FindingContext): Finding[] {
     const state = reachState(context, reach);
     if (state === null || state.flowM3s === 0 || context.flow === null) return null;
     const isReversed = context.flow.reachFlow[reach] < 0;
-    const lengthM = roomLengthM(context, reach);
+    const lengthM = roomLengthM(network, reach);
     const limitM = lengthM * DEVELOPING_SHARE;
     const opening = longestOpening(openingsAt(context, atNodes, reach, isReversed ? 'to' : 'from', 'in'));
     const spreadingM = opening === null ? 0 : spreadingLength(state.form.widthM, opening.side);
@@ -241,7 +242,7 @@ function shortReach(context: FindingContext): Finding[] {
         if (flow !== null && flow.reachFlow[reach] === 0) return null;
         const joints = jointsOf(context, reach);
         if (joints === 0) return null;
-        const lengthMm = roomLengthM(context, reach) * 1e3;
+        const lengthMm = roomLengthM(network, reach) * 1e3;
         const ratio = lengthMm / (widthMm * joints);
         return isBelow(ratio, WIDTHS_PER_JOINT) ? { ratio, joints, lengthMm } : null;
       },

@@ -1,5 +1,5 @@
+import { grouped } from '../by-key.ts';
 import type { Channel, Chip, Sourced } from '../chip/types.ts';
-import { grouped } from '../groups.ts';
 import { meanRoofRise, risenResistanceFactor } from '../physics/roof.ts';
 import { formatNumber, formatShare } from '../runsheet/shown.ts';
 import { acrossMark, middleOfChannel } from './centrelines.ts';

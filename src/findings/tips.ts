@@ -1,5 +1,5 @@
+import { grouped } from '../by-key.ts';
 import { endPiece } from '../geometry/pieces.ts';
-import { grouped } from '../groups.ts';
 import type { Network } from '../network/types.ts';
 import { oncePerContext } from './context.ts';
 

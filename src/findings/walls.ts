@@ -1,7 +1,7 @@
+import { grouped, remembered } from '../by-key.ts';
 import { minWallMm } from '../chip/limits.ts';
 import type { Channel, Sourced } from '../chip/types.ts';
 import { findNearPairs, type Nearness } from '../geometry/near.ts';
-import { grouped, remembered } from '../groups.ts';
 import { middleOf } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 import { unjoinedAreas } from './etched-area.ts';

@@ -1,10 +1,21 @@
 import type { Channel } from '../chip/types.ts';
+import { roomLengthM } from '../network/lengths.ts';
 import { reachName } from '../network/names.ts';
-import { floorShareInside, sideShareInside } from '../physics/duct.ts';
+import {
+  type DuctState,
+  fastestTime,
+  flowForShear,
+  meanTime,
+  type ShearAt,
+  shareInside,
+  shearPerGradient,
+  type Wall,
+  wallShear,
+} from '../physics/duct-state.ts';
 import { formatNumber, formatShare, type Shown } from '../runsheet/shown.ts';
 import type { ChannelEntry, ShearWindow, Window } from '../runsheet/types.ts';
+import { reachState } from '../solve/reach-state.ts';
 import type { FindingContext } from './context.ts';
-import { type ReachState, reachState, roomLengthM } from './ducts.ts';
 import { middleOfReach, othersText, reachesOf, reachNames, type Worst, worstReach } from './reaches.ts';
 import { isAbove, isBelow, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
@@ -59,16 +70,16 @@ function windowRule<W extends Window>(
 
 interface ShearFault {
   readonly value: number;
-  readonly wall: 'floor' | 'side';
-  readonly state: ReachState;
+  readonly wall: Wall;
+  readonly state: DuctState;
 }
 
 function shearFindings(context: FindingContext, watched: Watched<ShearWindow>): Finding[] {
   const { reaches, settings, window } = watched;
-  const walls = settings.walls === 'all' ? (['floor', 'side'] as const) : (['floor'] as const);
+  const walls = wallsOf(settings);
   const { over, min, max } = window;
   const worst = (
-    shareOrShear: (state: ReachState, wall: 'floor' | 'side') => number,
+    shareOrShear: (state: DuctState, wall: Wall) => number,
     isFault: (value: number) => boolean,
     badness: (value: number) => number,
   ): Worst<ShearFault> | null =>
@@ -92,8 +103,7 @@ function shearFindings(context: FindingContext, watched: Watched<ShearWindow>): 
   if (over !== null) {
     const range = { minPa: min, maxPa: max };
     const short = worst(
-      ({ form, gradient }, wall) =>
-        wall === 'floor' ? floorShareInside(form, gradient, range) : sideShareInside(form, gradient, range),
+      (state, wall) => shareInside(state, wall, range),
       (share) => isBelow(share, over),
       (share) => 1 + over - share,
     );
@@ -104,7 +114,7 @@ function shearFindings(context: FindingContext, watched: Watched<ShearWindow>): 
     min === null
       ? null
       : worst(
-          meanShear,
+          (state, wall) => wallShear(state, wall, 'mean'),
           (value) => isBelow(value, min),
           (value) => 1 / (value / min + 1),
         );
@@ -113,7 +123,7 @@ function shearFindings(context: FindingContext, watched: Watched<ShearWindow>): 
     max === null
       ? null
       : worst(
-          peakShear,
+          (state, wall) => wallShear(state, wall, 'peak'),
           (value) => isAbove(value, max),
           (value) => value,
         );
@@ -121,12 +131,8 @@ function shearFindings(context: FindingContext, watched: Watched<ShearWindow>): 
   return findings;
 }
 
-function meanShear({ form, gradient }: ReachState, wall: 'floor' | 'side'): number {
-  return gradient * (wall === 'floor' ? form.floorMean : form.sideMean);
-}
-
-function peakShear({ form, gradient }: ReachState, wall: 'floor' | 'side'): number {
-  return gradient * (wall === 'floor' ? form.floorPeak : form.sidePeak);
+function wallsOf({ walls }: ChannelEntry): readonly Wall[] {
+  return walls === 'all' ? ['floor', 'side'] : ['floor'];
 }
 
 function shearFinding(
@@ -150,7 +156,7 @@ function shearFinding(
   });
 }
 
-/** Shear is proportional to the flow, so the flows that keep the window are known at once. */
+/** The flows that keep the window are known at once. */
 function shearFix(
   context: FindingContext,
   { settings, window: { min, max } }: Watched<ShearWindow>,
@@ -159,14 +165,16 @@ function shearFix(
   const show = showFor(context);
   const name = reachName(context.network, reach);
   const { form, flowM3s } = fault.state;
-  const perFlow = context.run.fluid.viscosityPaS * form.resistance;
-  const all = settings.walls === 'all';
-  const meanPerFlow = perFlow * (all ? Math.min(form.floorMean, form.sideMean) : form.floorMean);
-  const peakPerFlow = perFlow * (all ? Math.max(form.floorPeak, form.sidePeak) : form.floorPeak);
-  const least = min === null ? 0 : min / meanPerFlow;
-  const most = max === null ? Infinity : max / peakPerFlow;
+  const { fluid } = context.run;
+  const walls = wallsOf(settings);
+  const flowsFor = (at: ShearAt, shearPa: number): number[] =>
+    walls.map((wall) => flowForShear(form, wall, at, shearPa, fluid));
+  const least = min === null ? 0 : Math.max(...flowsFor('mean', min));
+  const most = max === null ? Infinity : Math.min(...flowsFor('peak', max));
   if (isAbove(least, most)) {
-    return `no flow keeps ${name} inside: its peak is ${formatNumber(peakPerFlow / meanPerFlow)} times its mean; make the window wider, ask for it over a share of the floor (over: 80 %), or make the channel flatter`;
+    const mean = Math.min(...walls.map((wall) => shearPerGradient(form, wall, 'mean')));
+    const peak = Math.max(...walls.map((wall) => shearPerGradient(form, wall, 'peak')));
+    return `no flow keeps ${name} inside: its peak is ${formatNumber(peak / mean)} times its mean; make the window wider, ask for it over a share of the floor (over: 80 %), or make the channel flatter`;
   }
   const now = `(now ${show.text('flow', flowM3s)})`;
   if (flowM3s < least) {
@@ -187,8 +195,8 @@ function shareFinding(
   const show = showFor(context);
   const { value, wall, state } = worst.fault;
   const name = reachName(network, worst.reach);
-  const mean = meanShear(state, wall);
-  const peak = peakShear(state, wall);
+  const mean = wallShear(state, wall, 'mean');
+  const peak = wallShear(state, wall, 'peak');
   const isLow = window.min !== null && mean < window.min;
   const isHigh = window.max !== null && peak > window.max;
   const fix =
@@ -258,10 +266,11 @@ function passageOf(context: FindingContext, reaches: readonly number[]): Passage
   let meanS = 0;
   let fastestS = 0;
   for (const reach of reaches) {
-    const state = reachState(context, reach);
-    const lengthM = roomLengthM(context, reach);
-    meanS += lengthM / (state?.meanVelocity ?? 0);
-    fastestS += lengthM / (state?.peakVelocity ?? 0);
+    // the caller leaves out reaches without a state
+    const state = reachState(context, reach)!;
+    const lengthM = roomLengthM(context.network, reach);
+    meanS += meanTime(state, lengthM);
+    fastestS += fastestTime(state, lengthM);
   }
   return { reaches, meanS, fastestS };
 }

@@ -143,7 +143,7 @@ function endOf(curve: Curve): readonly [number, number] {
   return [ellipseX(curve.ellipse, curve.to), ellipseY(curve.ellipse, curve.to)];
 }
 
-/** The curve up to a share of its parameter, and the rest of it. */
+/** The curve up to a share of its parameter, and the rest of it (de Casteljau). */
 function split(curve: Curve, share: number): readonly [Curve, Curve] {
   if (curve.kind === 'arc') {
     const middle = curve.from + share * (curve.to - curve.from);
@@ -152,36 +152,28 @@ function split(curve: Curve, share: number): readonly [Curve, Curve] {
       { ...curve, from: middle },
     ];
   }
-  const [first, second] = splitCubic(curve.points, (a, b) => a + share * (b - a));
+  const p = curve.points;
+  const at = (a: number, b: number): number => a + share * (b - a);
+  const first = [p[0], p[1], 0, 0, 0, 0, 0, 0];
+  const second = [0, 0, 0, 0, 0, 0, p[6], p[7]];
+  for (const k of [0, 1]) {
+    const a = at(p[k], p[k + 2]);
+    const b = at(p[k + 2], p[k + 4]);
+    const c = at(p[k + 4], p[k + 6]);
+    const ab = at(a, b);
+    const bc = at(b, c);
+    const middle = at(ab, bc);
+    first[k + 2] = a;
+    first[k + 4] = ab;
+    first[k + 6] = middle;
+    second[k] = middle;
+    second[k + 2] = bc;
+    second[k + 4] = c;
+  }
   return [
     { kind: 'cubic', points: first },
     { kind: 'cubic', points: second },
   ];
-}
-
-/**
- * The points of a cubic's two parts (de Casteljau).
- * @param between the place between two coordinates that the cut goes by
- */
-export function splitCubic(
-  p: readonly number[],
-  between: (a: number, b: number) => number,
-): readonly [readonly number[], readonly number[]] {
-  const first = [p[0], p[1], 0, 0, 0, 0, 0, 0];
-  const second = [0, 0, 0, 0, 0, 0, p[6], p[7]];
-  for (let k = 0; k < 2; k++) {
-    const a = between(p[k], p[k + 2]);
-    const b = between(p[k + 2], p[k + 4]);
-    const c = between(p[k + 4], p[k + 6]);
-    const ab = between(a, b);
-    const bc = between(b, c);
-    first[k + 2] = a;
-    first[k + 4] = ab;
-    first[k + 6] = second[k] = between(ab, bc);
-    second[k + 2] = bc;
-    second[k + 4] = c;
-  }
-  return [first, second];
 }
 
 /** The chord is the image of a circle's: its distance is the sagitta's image, seen across the chord's direction. */

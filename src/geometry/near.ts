@@ -88,7 +88,7 @@ export function findNearPairs(
     }
   }
   const columns = { pairA: new Int32Array(pairA), pairB: new Int32Array(pairB) };
-  const { first: firstPair, member: side } = sidesByNode(n, columns.pairA, columns.pairB);
+  const { first: firstPair, item: side } = sidesByNode(n, columns.pairA, columns.pairB);
   return {
     pieces,
     index,

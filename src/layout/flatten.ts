@@ -9,7 +9,7 @@
  * Cost: linear in the pieces. A cusp, where no piece is straight enough, ends at a millionth of the curve.
  */
 import { Bounds } from '../geometry/bounds.ts';
-import { type Curve, type Ellipse, ellipseX, ellipseY, splitCubic } from '../geometry/curve.ts';
+import { type Curve, type Ellipse, ellipseX, ellipseY } from '../geometry/curve.ts';
 import type { Matrix, PathCommand } from '../svg/types.ts';
 import { ValueError } from '../svg/value-error.ts';
 import type { Centreline } from './types.ts';
@@ -159,27 +159,47 @@ class Polyline {
   }
 
   #cubic(x1: number, y1: number, x2: number, y2: number, x3: number, y3: number): void {
-    const points = [this.#x, this.#y, x1, y1, x2, y2, x3, y3];
-    for (let k = 0; k < 8; k += 2) {
-      const [x, y] = [points[k], points[k + 1]];
-      points[k] = this.#mapX(x, y);
-      points[k + 1] = this.#mapY(x, y);
-    }
-    this.#cubicPieces(points, SMALLEST_SHARE * polygonOf(points));
+    const X = [this.#mapX(this.#x, this.#y), this.#mapX(x1, y1), this.#mapX(x2, y2), this.#mapX(x3, y3)];
+    const Y = [this.#mapY(this.#x, this.#y), this.#mapY(x1, y1), this.#mapY(x2, y2), this.#mapY(x3, y3)];
+    const whole =
+      length(X[1] - X[0], Y[1] - Y[0]) + length(X[2] - X[1], Y[2] - Y[1]) + length(X[3] - X[2], Y[3] - Y[2]);
+    this.#cubicPieces(X[0], Y[0], X[1], Y[1], X[2], Y[2], X[3], Y[3], whole * SMALLEST_SHARE);
   }
 
   /** Halves by de Casteljau; the depth is bounded because each half's polygon is at most about half as long, or straight. */
-  #cubicPieces(points: readonly number[], smallest: number): void {
-    const [x0, y0] = points;
-    const [x3, y3] = [points[6], points[7]];
+  #cubicPieces(
+    x0: number,
+    y0: number,
+    x1: number,
+    y1: number,
+    x2: number,
+    y2: number,
+    x3: number,
+    y3: number,
+    smallest: number,
+  ): void {
     const chord = length(x3 - x0, y3 - y0);
-    const polygon = polygonOf(points);
+    const polygon = length(x1 - x0, y1 - y0) + length(x2 - x1, y2 - y1) + length(x3 - x2, y3 - y2);
     if (polygon - chord <= LOSS * (polygon + chord) || polygon <= smallest) {
+      const points = [x0, y0, x1, y1, x2, y2, x3, y3];
       const curve = polygon > chord ? ({ kind: 'cubic', points } as const) : null;
-      this.#add(x3, y3, middleRadius(points, chord), curve);
+      this.#add(x3, y3, middleRadius(x0, y0, x1, y1, x2, y2, x3, y3, chord), curve);
       return;
     }
-    for (const half of splitCubic(points, middle)) this.#cubicPieces(half, smallest);
+    const ax = (x0 + x1) / 2;
+    const ay = (y0 + y1) / 2;
+    const bx = (x1 + x2) / 2;
+    const by = (y1 + y2) / 2;
+    const cx = (x2 + x3) / 2;
+    const cy = (y2 + y3) / 2;
+    const abx = (ax + bx) / 2;
+    const aby = (ay + by) / 2;
+    const bcx = (bx + cx) / 2;
+    const bcy = (by + cy) / 2;
+    const mx = (abx + bcx) / 2;
+    const my = (aby + bcy) / 2;
+    this.#cubicPieces(x0, y0, ax, ay, abx, aby, mx, my, smallest);
+    this.#cubicPieces(mx, my, bcx, bcy, cx, cy, x3, y3, smallest);
   }
 
   #arc(command: PathCommand & { readonly kind: 'arc' }): void {
@@ -319,21 +339,22 @@ function ellipseRadius(e: Ellipse, t: number, chord: number): number {
 }
 
 /** |P′|³ / |P′ × P″| of a cubic at its middle, where P′ = ¾(P3 + P2 − P1 − P0) and P″ = 3(P0 − P1 − P2 + P3). */
-function middleRadius([x0, y0, x1, y1, x2, y2, x3, y3]: readonly number[], chord: number): number {
+function middleRadius(
+  x0: number,
+  y0: number,
+  x1: number,
+  y1: number,
+  x2: number,
+  y2: number,
+  x3: number,
+  y3: number,
+  chord: number,
+): number {
   const dx = 0.75 * (x3 + x2 - x1 - x0);
   const dy = 0.75 * (y3 + y2 - y1 - y0);
   const ddx = 3 * (x0 - x1 - x2 + x3);
   const ddy = 3 * (y0 - y1 - y2 + y3);
   return bend(length(dx, dy) ** 3 / Math.abs(dx * ddy - dy * ddx), chord);
-}
-
-/** Length of a cubic's control polygon. */
-function polygonOf([x0, y0, x1, y1, x2, y2, x3, y3]: readonly number[]): number {
-  return length(x1 - x0, y1 - y0) + length(x2 - x1, y2 - y1) + length(x3 - x2, y3 - y2);
-}
-
-function middle(a: number, b: number): number {
-  return (a + b) / 2;
 }
 
 function bend(radius: number, chord: number): number {

@@ -2,8 +2,8 @@
  * Drawn shapes → what they are on a chip: strokes (channels), holes (ports), outlines and what is ignored, still in drawing
  * units. Whether a hole is a port and a name a layer is for the run sheet to say.
  */
+import { remembered } from '../by-key.ts';
 import { InputError } from '../errors.ts';
-import { remembered } from '../groups.ts';
 import { PX_MM } from '../svg/lengths.ts';
 import { stretches } from '../svg/matrix.ts';
 import type { Clip, Group, Shape, SvgDrawing, Undrawn } from '../svg/types.ts';

@@ -1,49 +1,47 @@
 import type { Draft } from './draft.ts';
 import type { Kept } from './kept.ts';
 import type { Stops } from './stops.ts';
+import type { NetworkTrace } from './types.ts';
 
 /** Shorter than this there is no reach: its nodes are one. Far above rounding, far below anything drawn. */
 export const NO_LENGTH_MM = 1e-9;
 
-/** Stretches of centreline between neighbouring nodes outside wells: columns, by centreline and position. */
-export interface Arcs {
-  readonly count: number;
-  readonly centreline: number[];
-  readonly from: number[];
-  readonly to: number[];
+/** Stretches of centreline between neighbouring nodes outside wells. */
+export interface Arcs
+  extends Pick<NetworkTrace, 'arcCount' | 'arcCentreline' | 'arcFrom' | 'arcTo' | 'firstArc'> {
   /** Roots in draft.nodes, at the from and the to position. */
-  readonly nodeFrom: number[];
-  readonly nodeTo: number[];
+  readonly rootFrom: Int32Array;
+  readonly rootTo: Int32Array;
 }
 
 /** Cuts each kept centreline at its stops. Makes the nodes of dead ends. A stretch without length joins its nodes. */
 export function toArcs(draft: Draft, stops: Stops, kept: Kept): Arcs {
   const { pieces, nodes } = draft;
-  const arcs = { count: 0, centreline: [], from: [], to: [], nodeFrom: [], nodeTo: [] } as {
-    count: number;
-    centreline: number[];
-    from: number[];
-    to: number[];
-    nodeFrom: number[];
-    nodeTo: number[];
-  };
-  const add = (c: number, from: number, to: number, nodeFrom: number, nodeTo: number): void => {
+  const most = stops.count + pieces.centrelineCount;
+  const arcCentreline = new Int32Array(most);
+  const arcFrom = new Float64Array(most);
+  const arcTo = new Float64Array(most);
+  const nodeFrom = new Int32Array(most);
+  const nodeTo = new Int32Array(most);
+  const firstArc = new Int32Array(pieces.centrelineCount + 1);
+  let arcCount = 0;
+  const add = (c: number, from: number, to: number, atFrom: number, atTo: number): void => {
     if (to - from <= NO_LENGTH_MM) {
-      nodes.unite(nodeFrom, nodeTo);
+      nodes.unite(atFrom, atTo);
       return;
     }
-    arcs.centreline.push(c);
-    arcs.from.push(from);
-    arcs.to.push(to);
-    arcs.nodeFrom.push(nodeFrom);
-    arcs.nodeTo.push(nodeTo);
-    arcs.count++;
+    arcCentreline[arcCount] = c;
+    arcFrom[arcCount] = from;
+    arcTo[arcCount] = to;
+    nodeFrom[arcCount] = atFrom;
+    nodeTo[arcCount++] = atTo;
   };
   for (let c = 0; c < pieces.centrelineCount; c++) {
     const start = kept.from[c];
     const end = kept.to[c];
     let position = start;
     let node = -1;
+    firstArc[c] = arcCount;
     for (let k = stops.firstStop[c]; k < stops.firstStop[c + 1]; k++) {
       if (stops.to[k] < start - NO_LENGTH_MM || stops.from[k] > end + NO_LENGTH_MM) continue;
       if (node < 0) {
@@ -63,43 +61,17 @@ export function toArcs(draft: Draft, stops: Stops, kept: Kept): Arcs {
     if (node < 0) node = nodes.add();
     if (pieces.centrelineClosed[c] === 1) {
       // The first point is a node of its own until rule 7 joins what meets there.
-      const first = firstNodeOf(arcs, c);
-      add(c, position, end, node, first ?? node);
+      add(c, position, end, node, arcCount > firstArc[c] ? nodeFrom[firstArc[c]] : node);
     } else if (end - position > draft.slackMm) add(c, position, end, node, nodes.add());
   }
-  for (let a = 0; a < arcs.count; a++) {
-    arcs.nodeFrom[a] = nodes.find(arcs.nodeFrom[a]);
-    arcs.nodeTo[a] = nodes.find(arcs.nodeTo[a]);
-  }
-  return arcs;
-}
-
-function firstNodeOf(
-  arcs: { centreline: number[]; nodeFrom: number[]; count: number },
-  c: number,
-): number | null {
-  for (let a = arcs.count - 1, first: number | null = null; ; a--) {
-    if (a < 0 || arcs.centreline[a] !== c) return first;
-    first = arcs.nodeFrom[a];
-  }
-}
-
-/** For each node root, the arc sides (2a at the arc's from node, 2a + 1 at its to node) that come to it. */
-export function sidesByNode(
-  draft: Draft,
-  arcs: Arcs,
-): { readonly first: Int32Array; readonly side: Int32Array } {
-  const first = new Int32Array(draft.nodes.size + 1);
-  for (let a = 0; a < arcs.count; a++) {
-    first[arcs.nodeFrom[a] + 1]++;
-    first[arcs.nodeTo[a] + 1]++;
-  }
-  for (let i = 0; i < draft.nodes.size; i++) first[i + 1] += first[i];
-  const fill = first.slice();
-  const side = new Int32Array(2 * arcs.count);
-  for (let a = 0; a < arcs.count; a++) {
-    side[fill[arcs.nodeFrom[a]]++] = 2 * a;
-    side[fill[arcs.nodeTo[a]]++] = 2 * a + 1;
-  }
-  return { first, side };
+  firstArc[pieces.centrelineCount] = arcCount;
+  return {
+    arcCount,
+    arcCentreline: arcCentreline.subarray(0, arcCount),
+    arcFrom: arcFrom.subarray(0, arcCount),
+    arcTo: arcTo.subarray(0, arcCount),
+    firstArc,
+    rootFrom: nodeFrom.subarray(0, arcCount).map((node) => nodes.find(node)),
+    rootTo: nodeTo.subarray(0, arcCount).map((node) => nodes.find(node)),
+  };
 }

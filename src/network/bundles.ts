@@ -1,5 +1,6 @@
 import type { Nearness } from '../geometry/near.ts';
 import type { Pieces } from '../geometry/pieces.ts';
+import { type Groups, itemsOf, toGroups } from '../groups.ts';
 import { type CentrelineEnds, END_FREE, NodeUnion } from './draft.ts';
 
 /**
@@ -15,9 +16,8 @@ export interface Bundles {
    * over another way than end to end.
    */
   readonly around: Int32Array;
-  /** Ends of the bundle whose first end is e: member[first[e]] … member[first[e + 1] − 1]; none for any other end. */
-  readonly first: Int32Array;
-  readonly member: Int32Array;
+  /** The ends of each bundle, by its first end; none for any other end. */
+  readonly members: Groups;
 }
 
 /**
@@ -35,8 +35,15 @@ export function findBundles(near: Nearness, ends: CentrelineEnds, slackMm: numbe
           ends.x.length,
           links.filter(([a, b]) => !isAcrossShortStroke(ends, short, a, b, slackMm)),
         );
-  return { of, around, ...membersOf(of) };
+  return { of, around, members: toGroups(of.length, of) };
 }
+
+/** The ends of the bundle that an end belongs to; none for an end that is alone. */
+export function bundleAt({ of, members }: Bundles, end: number): Int32Array {
+  return of[end] < 0 ? NOBODY : itemsOf(members, of[end]);
+}
+
+const NOBODY = new Int32Array(0);
 
 type Link = readonly [number, number];
 
@@ -82,26 +89,10 @@ function lastEnd(pieces: Pieces, piece: number): number {
 
 /** The smallest end of each set that the links make; −1 for an end without a link. */
 function unite(count: number, links: readonly Link[]): Int32Array {
-  const sets = new NodeUnion();
-  const at = new Map<number, number>();
-  const ends: number[] = [];
-  const setOf = (end: number): number => {
-    let set = at.get(end);
-    if (set === undefined) {
-      set = sets.add();
-      at.set(end, set);
-      ends.push(end);
-    }
-    return set;
-  };
-  for (const [a, b] of links) sets.unite(setOf(a), setOf(b));
-  const least = new Map<number, number>();
-  for (const [set, end] of ends.entries()) {
-    const root = sets.find(set);
-    least.set(root, Math.min(end, least.get(root) ?? end));
-  }
+  const sets = new NodeUnion(count);
+  for (const [a, b] of links) sets.unite(a, b);
   const of = new Int32Array(count).fill(-1);
-  for (const [set, end] of ends.entries()) of[end] = least.get(sets.find(set)) ?? end;
+  for (const [a, b] of links) of[a] = of[b] = sets.find(a);
   return of;
 }
 
@@ -145,14 +136,4 @@ function sideOf(ends: CentrelineEnds, c: number, end: number): 0 | 1 {
   const toStart = Math.hypot(ends.x[end] - ends.x[2 * c], ends.y[end] - ends.y[2 * c]);
   const toEnd = Math.hypot(ends.x[end] - ends.x[2 * c + 1], ends.y[end] - ends.y[2 * c + 1]);
   return toStart <= toEnd ? 0 : 1;
-}
-
-function membersOf(of: Int32Array): Pick<Bundles, 'first' | 'member'> {
-  const first = new Int32Array(of.length + 1);
-  for (const head of of) if (head >= 0) first[head + 1]++;
-  for (let e = 0; e < of.length; e++) first[e + 1] += first[e];
-  const fill = first.slice();
-  const member = new Int32Array(first[of.length]);
-  for (let e = 0; e < of.length; e++) if (of[e] >= 0) member[fill[of[e]]++] = e;
-  return { first, member };
 }

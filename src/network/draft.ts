@@ -1,6 +1,7 @@
 import type { Chip } from '../chip/types.ts';
 import type { Nearness } from '../geometry/near.ts';
-import { type Pieces, pieceAt } from '../geometry/pieces.ts';
+import { nearestShare, placeOn } from '../geometry/on-piece.ts';
+import { endPiece, type Pieces, pieceAt } from '../geometry/pieces.ts';
 
 /**
  * The network while it is being built: the drawn pieces, what was found on each centreline, and which nodes are one.
@@ -49,6 +50,10 @@ export class Marks {
 export class NodeUnion {
   private readonly parent: number[] = [];
 
+  constructor(count: number) {
+    for (let node = 0; node < count; node++) this.add();
+  }
+
   get size(): number {
     return this.parent.length;
   }
@@ -75,6 +80,9 @@ export class NodeUnion {
   }
 }
 
+/** Far below anything drawn, far above rounding: nearer is one place; a piece as short would have no direction. */
+export const ROUNDING_MM = 1e-9;
+
 export const END_FREE = 0;
 export const END_JOINED = 1;
 export const END_IN_PORT = 2;
@@ -87,9 +95,6 @@ export const END_IN_PORT = 2;
 export interface CentrelineEnds {
   readonly x: Float64Array;
   readonly y: Float64Array;
-  /** Unit vector in which the end points, out of the channel. */
-  readonly outX: Float64Array;
-  readonly outY: Float64Array;
   readonly state: Uint8Array;
   readonly extension: Float64Array;
   /** Where the carried-on piece ends. */
@@ -101,41 +106,27 @@ export interface CentrelineEnds {
 
 export function toEnds(pieces: Pieces): CentrelineEnds {
   const n = 2 * pieces.centrelineCount;
-  const ends: CentrelineEnds = {
-    x: new Float64Array(n),
-    y: new Float64Array(n),
-    outX: new Float64Array(n),
-    outY: new Float64Array(n),
+  const x = new Float64Array(n);
+  const y = new Float64Array(n);
+  for (let e = 0; e < n; e++) {
+    const piece = endPiece(pieces, e);
+    x[e] = (e & 1) === 0 ? pieces.x1[piece] : pieces.x2[piece];
+    y[e] = (e & 1) === 0 ? pieces.y1[piece] : pieces.y2[piece];
+  }
+  return {
+    x,
+    y,
     state: new Uint8Array(n),
     extension: new Float64Array(n),
-    tipX: new Float64Array(n),
-    tipY: new Float64Array(n),
+    tipX: x.slice(),
+    tipY: y.slice(),
     joinedTo: new Int32Array(n).fill(-1),
   };
-  for (let c = 0; c < pieces.centrelineCount; c++) {
-    const first = pieces.firstPiece[c];
-    const last = pieces.firstPiece[c + 1] - 1;
-    setEnd(ends, 2 * c, pieces, pieces.x1[first], pieces.y1[first]);
-    setEnd(ends, 2 * c + 1, pieces, pieces.x2[last], pieces.y2[last]);
-  }
-  return ends;
-}
-
-function setEnd(ends: CentrelineEnds, e: number, pieces: Pieces, x: number, y: number): void {
-  ends.x[e] = x;
-  ends.y[e] = y;
-  ends.outX[e] = pieces.outX[e];
-  ends.outY[e] = pieces.outY[e];
-  ends.tipX[e] = x;
-  ends.tipY[e] = y;
 }
 
 /** Position of an end on its centreline, its carried-on piece included. */
-export function endPosition(draft: Draft, end: number): number {
-  const c = end >> 1;
-  return (end & 1) === 0
-    ? -draft.ends.extension[end]
-    : draft.pieces.centrelineLength[c] + draft.ends.extension[end];
+export function endPosition({ pieces, ends }: Draft, end: number): number {
+  return (end & 1) === 0 ? -ends.extension[end] : pieces.centrelineLength[end >> 1] + ends.extension[end];
 }
 
 /** Position of an end on its centreline as drawn. */
@@ -143,14 +134,24 @@ export function drawnPosition({ pieces }: Draft, end: number): number {
   return (end & 1) === 0 ? 0 : pieces.centrelineLength[end >> 1];
 }
 
-/** The piece at an end. */
-export function endPiece(pieces: Pieces, end: number): number {
-  const c = end >> 1;
-  return (end & 1) === 0 ? pieces.firstPiece[c] : pieces.firstPiece[c + 1] - 1;
+/**
+ * Whether a piece of the end's own centreline passes it more than two widths back along it: only there may it be joined as
+ * another channel is (rule 3).
+ */
+export function isFarBack(draft: Draft, end: number, piece: number): boolean {
+  const { pieces, ends } = draft;
+  const { s } = placeOn(pieces, piece, nearestShare(pieces, piece, ends.x[end], ends.y[end]));
+  return Math.abs(s - endPosition(draft, end)) > 4 * pieces.half[piece];
 }
 
-/** Point of a centreline at position s; beyond the drawn ends on the carried-on piece. Writes into out. */
-export function pointAt(draft: Draft, c: number, s: number, out: { x: number; y: number }): void {
+/** A point of the drawing, mm. */
+export interface Point {
+  readonly x: number;
+  readonly y: number;
+}
+
+/** Point of a centreline at position s; beyond the drawn ends on the carried-on piece. Hot loops give the object to write to. */
+export function pointAt(draft: Draft, c: number, s: number, out = { x: 0, y: 0 }): Point {
   const { pieces, ends } = draft;
   const length = pieces.centrelineLength[c];
   if (s < 0 || s > length) {
@@ -159,18 +160,19 @@ export function pointAt(draft: Draft, c: number, s: number, out: { x: number; y:
     const share = ends.extension[e] > 0 ? beyond / ends.extension[e] : 0;
     out.x = ends.x[e] + share * (ends.tipX[e] - ends.x[e]);
     out.y = ends.y[e] + share * (ends.tipY[e] - ends.y[e]);
-    return;
+    return out;
   }
   const i = pieceAt(pieces, c, s);
   const t = Math.min(1, Math.max(0, (s - pieces.start[i]) / pieces.length[i]));
   out.x = pieces.x1[i] + t * (pieces.x2[i] - pieces.x1[i]);
   out.y = pieces.y1[i] + t * (pieces.y2[i] - pieces.y1[i]);
+  return out;
 }
 
 /** Whether an end was carried on in its own direction, to within the slack. */
-export function isCarriedStraightOn({ ends, slackMm }: Draft, end: number): boolean {
+export function isCarriedStraightOn({ pieces, ends, slackMm }: Draft, end: number): boolean {
   const dx = ends.tipX[end] - ends.x[end];
   const dy = ends.tipY[end] - ends.y[end];
-  const along = dx * ends.outX[end] + dy * ends.outY[end];
-  return along > 0 && Math.abs(dx * ends.outY[end] - dy * ends.outX[end]) <= slackMm;
+  const along = dx * pieces.outX[end] + dy * pieces.outY[end];
+  return along > 0 && Math.abs(dx * pieces.outY[end] - dy * pieces.outX[end]) <= slackMm;
 }

@@ -1,19 +1,18 @@
 import type { Chip } from '../chip/types.ts';
 import { bendK, MITRE_MAX_TURN_RAD, mitreK, shallowMitreK } from '../physics/joints.ts';
+import type { Chains } from './chains.ts';
+import { APART_WIDTHS } from './computed-joints.ts';
 import type { Draft } from './draft.ts';
 import type { JointTally } from './joint-types.ts';
-import { ANGLE_TOLERANCE_RAD, APART_WIDTHS, turnBetween } from './node-joints.ts';
 import type { Reaches } from './reaches.ts';
-import type { Runs } from './runs.ts';
+import { ANGLE_TOLERANCE_RAD, turnBetween } from './turns.ts';
+import type { Network } from './types.ts';
 
 /** The last computed radius of a bend, in widths. */
 const TIGHTEST_BEND_WIDTHS = 1;
 
-/** Signed length and bound that corners and bends add to each reach, mm. */
-export interface DuctJoints {
-  readonly reachMm: Float64Array;
-  readonly reachBoundMm: Float64Array;
-}
+/** Signed length that joints add to each reach, and its bound, mm. */
+export type ReachJoints = Pick<Network, 'reachJointMm' | 'reachJointBoundMm'>;
 
 /**
  * Rule 8, `joints: resolved`, inside runs of equal duct: mitred corners by their turn, bends by radius and angle (chords of
@@ -22,11 +21,14 @@ export interface DuctJoints {
  *
  * Cost: linear in the segments.
  */
-export function addDuctJoints(draft: Draft, reaches: Reaches, runs: Runs, tally: JointTally): DuctJoints {
-  const joints = { reachMm: new Float64Array(reaches.count), reachBoundMm: new Float64Array(reaches.count) };
-  const run = new Run(reaches);
+export function addDuctJoints(draft: Draft, reaches: Reaches, runs: Chains, tally: JointTally): ReachJoints {
+  const joints = {
+    reachJointMm: new Float64Array(reaches.reachCount),
+    reachJointBoundMm: new Float64Array(reaches.reachCount),
+  };
+  const run = new Run();
   for (let n = 0; n < runs.count; n++) {
-    run.set(draft.chip, runs, n);
+    run.set(draft.chip, reaches, runs, n);
     if (Number.isNaN(run.aspect)) continue;
     addCorners(run, joints, tally, draft.slackMm);
     addBends(run, joints, tally);
@@ -41,85 +43,53 @@ class Run {
   /** Width over depth; NaN where the depth is not known. */
   aspect = Number.NaN;
   isLoop = false;
-  private readonly reaches: Reaches;
-  /** 2·segment, + 1 where it is gone through backwards. */
-  private codes = new Int32Array(64);
+  readonly reach: number[] = [];
+  /** First point and vector, mm. */
+  readonly x: number[] = [];
+  readonly y: number[] = [];
+  readonly dx: number[] = [];
+  readonly dy: number[] = [];
+  readonly radius: number[] = [];
 
-  constructor(reaches: Reaches) {
-    this.reaches = reaches;
-  }
-
-  set(chip: Chip, runs: Runs, n: number): void {
-    const { firstSegment, channel } = this.reaches;
-    const { ductWidthMm, depthMm } = chip.channels[channel[runs.reach[runs.first[n]]]];
+  set(chip: Chip, reaches: Reaches, { first, side, isLoop }: Chains, n: number): void {
+    const { firstSegment, reachChannel } = reaches;
+    const { ductWidthMm, depthMm } = chip.channels[reachChannel[side[first[n]] >> 1]];
     this.width = ductWidthMm;
     this.aspect = ductWidthMm / depthMm;
-    this.isLoop = runs.isLoop[n] === 1;
+    this.isLoop = isLoop[n] === 1;
     this.count = 0;
-    for (let k = runs.first[n]; k < runs.first[n + 1]; k++) {
-      const begin = firstSegment[runs.reach[k]];
-      const end = firstSegment[runs.reach[k] + 1];
-      if (this.count + end - begin > this.codes.length) this.grow(this.count + end - begin);
-      if (runs.reversed[k] === 0) for (let s = begin; s < end; s++) this.codes[this.count++] = 2 * s;
-      else for (let s = end - 1; s >= begin; s--) this.codes[this.count++] = 2 * s + 1;
+    for (let k = first[n]; k < first[n + 1]; k++) {
+      const begin = firstSegment[side[k] >> 1];
+      const end = firstSegment[(side[k] >> 1) + 1];
+      if ((side[k] & 1) === 0) for (let s = begin; s < end; s++) this.add(reaches, s, true);
+      else for (let s = end - 1; s >= begin; s--) this.add(reaches, s, false);
     }
   }
 
-  private grow(size: number): void {
-    const codes = new Int32Array(2 * size);
-    codes.set(this.codes);
-    this.codes = codes;
-  }
-
-  reachOf(k: number): number {
-    return this.reaches.segments.reach[this.codes[k] >> 1];
-  }
-
-  dx(k: number): number {
-    const { x1, x2 } = this.reaches.segments;
-    const s = this.codes[k] >> 1;
-    return (this.codes[k] & 1) === 0 ? x2[s] - x1[s] : x1[s] - x2[s];
-  }
-
-  dy(k: number): number {
-    const { y1, y2 } = this.reaches.segments;
-    const s = this.codes[k] >> 1;
-    return (this.codes[k] & 1) === 0 ? y2[s] - y1[s] : y1[s] - y2[s];
-  }
-
-  startX(k: number): number {
-    const { x1, x2 } = this.reaches.segments;
-    return ((this.codes[k] & 1) === 0 ? x1 : x2)[this.codes[k] >> 1];
-  }
-
-  startY(k: number): number {
-    const { y1, y2 } = this.reaches.segments;
-    return ((this.codes[k] & 1) === 0 ? y1 : y2)[this.codes[k] >> 1];
+  private add(reaches: Reaches, s: number, forward: boolean): void {
+    const { segmentX1: x1, segmentY1: y1, segmentX2: x2, segmentY2: y2 } = reaches;
+    const k = this.count++;
+    this.reach[k] = reaches.segmentReach[s];
+    this.x[k] = forward ? x1[s] : x2[s];
+    this.y[k] = forward ? y1[s] : y2[s];
+    this.dx[k] = forward ? x2[s] - x1[s] : x1[s] - x2[s];
+    this.dy[k] = forward ? y2[s] - y1[s] : y1[s] - y2[s];
+    this.radius[k] = reaches.segmentBendRadiusMm[s];
   }
 
   /** Drawn length, mm. */
   length(k: number): number {
-    return Math.hypot(this.dx(k), this.dy(k));
-  }
-
-  radius(k: number): number {
-    return this.reaches.segments.bendRadius[this.codes[k] >> 1];
+    return Math.hypot(this.dx[k], this.dy[k]);
   }
 
   /** Turn from segment k to the next, rad. */
   turn(k: number): number {
-    return turnBetween(
-      this.dx(k),
-      this.dy(k),
-      this.radius(k),
-      this.dx(k + 1),
-      this.dy(k + 1),
-      this.radius(k + 1),
-    );
+    const { dx, dy, radius } = this;
+    return turnBetween(dx[k], dy[k], radius[k], dx[k + 1], dy[k + 1], radius[k + 1]);
   }
 }
 
-function addCorners(run: Run, joints: DuctJoints, tally: JointTally, slackMm: number): void {
+function addCorners(run: Run, joints: ReachJoints, tally: JointTally, slackMm: number): void {
   const { width, count, isLoop } = run;
   // A bend is a joint too, where it turns by more than the tolerance over the room that a corner needs. It has no meeting
   // point; it begins where a mitre's square would: half a width before.
@@ -135,7 +105,7 @@ function addCorners(run: Run, joints: DuctJoints, tally: JointTally, slackMm: nu
   };
   if (isLoop) sinceJoint = Number.POSITIVE_INFINITY;
   for (let k = 0; k + 1 < count; k++) {
-    if (isTight(run.radius(k))) {
+    if (isTight(run.radius[k])) {
       settle(sinceJoint + width / 2);
       sinceJoint = width / 2;
     } else {
@@ -145,7 +115,7 @@ function addCorners(run: Run, joints: DuctJoints, tally: JointTally, slackMm: nu
     if (turn <= 1e-6) continue;
     // Needs no room and is not listed: its k is below 0.001.
     if (turn <= ANGLE_TOLERANCE_RAD) {
-      addAt(run, joints.reachMm, k, mitreK(run.aspect, turn).k * width);
+      addAt(run, joints.reachJointMm, k, mitreK(run.aspect, turn).k * width);
       continue;
     }
     // A vertex within the slack of the run's end is the node there, drawn a hair off.
@@ -159,31 +129,31 @@ function addCorners(run: Run, joints: DuctJoints, tally: JointTally, slackMm: nu
     return;
   }
   if (count === 0) return;
-  const rest = sinceJoint + (isTight(run.radius(count - 1)) ? width / 2 : run.length(count - 1));
+  const rest = sinceJoint + (isTight(run.radius[count - 1]) ? width / 2 : run.length(count - 1));
   if (rest > slackMm) settle(rest);
 }
 
 /** Adds to the reach of a corner between segment k and the next; at a seam half to either. */
 function addAt(run: Run, into: Float64Array, k: number, value: number): void {
-  into[run.reachOf(k)] += value / 2;
-  into[run.reachOf(k + 1)] += value / 2;
+  into[run.reach[k]] += value / 2;
+  into[run.reach[k + 1]] += value / 2;
 }
 
 function addCorner(
   run: Run,
-  joints: DuctJoints,
+  joints: ReachJoints,
   tally: JointTally,
   at: number,
   turn: number,
   room: number,
 ): void {
   const { width, aspect } = run;
-  const [x, y] = [run.startX(at + 1), run.startY(at + 1)];
+  const [x, y] = [run.x[at + 1], run.y[at + 1]];
   const isComputed = turn <= MITRE_MAX_TURN_RAD + 1e-9;
   const { k, error } = mitreK(aspect, Math.min(turn, MITRE_MAX_TURN_RAD));
   if (isComputed && room >= APART_WIDTHS * width - 1e-6) {
-    addAt(run, joints.reachMm, at, k * width);
-    addAt(run, joints.reachBoundMm, at, error * width);
+    addAt(run, joints.reachJointMm, at, k * width);
+    addAt(run, joints.reachJointBoundMm, at, error * width);
     tally.add('mitred corner', k * width, error * width, x, y);
     return;
   }
@@ -191,14 +161,14 @@ function addCorner(
   // of the legs, most in the shallow limit, up to all that there is of the shorter one on either leg.
   const beyond = isComputed ? 0 : Math.min(Math.abs(shallowMitreK(turn)) * width, 2 * room);
   const bound = Math.max((Math.abs(k) + error) * width, beyond);
-  addAt(run, joints.reachBoundMm, at, bound);
+  addAt(run, joints.reachJointBoundMm, at, bound);
   tally.add('corner not computed', 0, bound, x, y);
 }
 
-function addBends(run: Run, joints: DuctJoints, tally: JointTally): void {
+function addBends(run: Run, joints: ReachJoints, tally: JointTally): void {
   for (let k = 0; k < run.count; ) {
-    const next = run.radius(k) === 0 ? k + 1 : endOfBend(run, k);
-    if (run.radius(k) > 0) addBend(run, joints, tally, k, next);
+    const next = run.radius[k] === 0 ? k + 1 : endOfBend(run, k);
+    if (run.radius[k] > 0) addBend(run, joints, tally, k, next);
     k = next;
   }
 }
@@ -207,7 +177,7 @@ function addBends(run: Run, joints: DuctJoints, tally: JointTally): void {
 function endOfBend(run: Run, k: number): number {
   let side = 0;
   let next = k + 1;
-  for (; next < run.count && run.radius(next) > 0; next++) {
+  for (; next < run.count && run.radius[next] > 0; next++) {
     const turn = turnSide(run, next - 1);
     if (side !== 0 && turn !== 0 && turn !== side) break;
     if (turn !== 0) side = turn;
@@ -215,13 +185,13 @@ function endOfBend(run: Run, k: number): number {
   return next;
 }
 
-function addBend(run: Run, joints: DuctJoints, tally: JointTally, from: number, to: number): void {
+function addBend(run: Run, joints: ReachJoints, tally: JointTally, from: number, to: number): void {
   const { width, aspect } = run;
   let angle = 0;
   let tightest = Number.POSITIVE_INFINITY;
   for (let k = from; k < to; k++) {
     angle += chordAngle(run, k);
-    tightest = Math.min(tightest, run.radius(k) / width);
+    tightest = Math.min(tightest, run.radius[k] / width);
   }
   const isComputed = tightest >= TIGHTEST_BEND_WIDTHS * (1 - 1e-6);
   // Tighter than its width: at worst it is a mitred corner of the same turn.
@@ -230,21 +200,21 @@ function addBend(run: Run, joints: DuctJoints, tally: JointTally, from: number, 
   let added = 0;
   for (let k = from; k < to; k++) {
     const share = chordAngle(run, k);
-    joints.reachBoundMm[run.reachOf(k)] += (bound * share) / angle;
+    joints.reachJointBoundMm[run.reach[k]] += (bound * share) / angle;
     if (!isComputed) continue;
-    const length = bendK(aspect, Math.max(run.radius(k) / width, TIGHTEST_BEND_WIDTHS), share).k * width;
-    joints.reachMm[run.reachOf(k)] += length;
+    const length = bendK(aspect, Math.max(run.radius[k] / width, TIGHTEST_BEND_WIDTHS), share).k * width;
+    joints.reachJointMm[run.reach[k]] += length;
     added += length;
   }
-  tally.add(isComputed ? 'bend' : 'bend not computed', added, bound, run.startX(from), run.startY(from));
+  tally.add(isComputed ? 'bend' : 'bend not computed', added, bound, run.x[from], run.y[from]);
 }
 
 /** The angle of the curve that a chord was cut from. */
 function chordAngle(run: Run, k: number): number {
-  return 2 * Math.asin(Math.min(1, run.length(k) / (2 * run.radius(k))));
+  return 2 * Math.asin(Math.min(1, run.length(k) / (2 * run.radius[k])));
 }
 
 /** Which way the curve turns after this segment: +1 or −1, 0 for straight on. */
 function turnSide(run: Run, k: number): number {
-  return Math.sign(run.dx(k) * run.dy(k + 1) - run.dy(k) * run.dx(k + 1));
+  return Math.sign(run.dx[k] * run.dy[k + 1] - run.dy[k] * run.dx[k + 1]);
 }

@@ -1,4 +1,4 @@
-import { pieceAt } from '../geometry/pieces.ts';
+import { endPiece } from '../geometry/pieces.ts';
 import { type Rounding, sectorTo } from '../geometry/rounding.ts';
 import {
   addShapeStretches,
@@ -32,49 +32,44 @@ export class KeptStrips {
   addStretches(into: number[], piece: number, ax: number, ay: number, bx: number, by: number): void {
     const { pieces, slackMm } = this.draft;
     const c = pieces.centreline[piece];
+    const shapes = this.changedShapes(piece);
+    if (shapes === null) {
+      const [from, to] = [this.kept.from[c], this.kept.to[c]];
+      addStripStretches(into, pieces, piece, ax, ay, bx, by, slackMm, this.ends, from, to);
+    } else for (const shape of shapes) addShapeStretches(into, shape, ax, ay, bx, by, slackMm);
+  }
+
+  /** What the strip of a piece is made of where joining changed it; null where it is as drawn. */
+  private changedShapes(piece: number): PieceShape[] | null {
+    const { pieces } = this.draft;
+    const c = pieces.centreline[piece];
     const from = this.kept.from[c];
     const to = this.kept.to[c];
     const start = pieces.start[piece];
     const end = start + pieces.length[piece];
-    const isFirst = piece === pieces.firstPiece[c];
-    const isLast = piece === pieces.firstPiece[c + 1] - 1;
-    const growsAtStart = isFirst && from < 0 && isCarriedStraightOn(this.draft, 2 * c);
-    const growsAtEnd = isLast && to > end && isCarriedStraightOn(this.draft, 2 * c + 1);
+    const growsAtStart =
+      piece === endPiece(pieces, 2 * c) && from < 0 && isCarriedStraightOn(this.draft, 2 * c);
+    const growsAtEnd =
+      piece === endPiece(pieces, 2 * c + 1) && to > end && isCarriedStraightOn(this.draft, 2 * c + 1);
     const startMoves = from > start || growsAtStart;
     const endMoves = to < end || growsAtEnd;
-    if (pieces.centrelineClosed[c] === 1 || !(startMoves || endMoves)) {
-      addStripStretches(into, pieces, piece, ax, ay, bx, by, slackMm, this.ends, from, to);
-      return;
-    }
-    if (to <= start || from >= end) return;
+    if (pieces.centrelineClosed[c] === 1 || !(startMoves || endMoves)) return null;
+    if (to <= start || from >= end) return [];
     if (pieces.bulge[piece] > 0 && (growsAtStart || growsAtEnd)) {
-      this.addBesideCurve(into, piece, growsAtStart, growsAtEnd, ax, ay, bx, by);
-      return;
+      return this.shapesBesideCurve(piece, growsAtStart, growsAtEnd);
     }
-    const low = startMoves ? from : start;
-    const high = endMoves ? to : end;
-    this.addShape(into, c, low, high, ax, ay, bx, by, {
-      atStart: startMoves
-        ? roundingAtSeam(pieces, 2 * c, this.ends, slackMm)
-        : roundingAt(pieces, piece, -1, this.ends, slackMm, from, to),
-      atEnd: endMoves
-        ? roundingAtSeam(pieces, 2 * c + 1, this.ends, slackMm)
-        : roundingAt(pieces, piece, 1, this.ends, slackMm, from, to),
-    });
+    return this.shape(
+      c,
+      startMoves ? from : start,
+      endMoves ? to : end,
+      startMoves ? this.seamRounding(2 * c) : this.vertexRounding(piece, -1),
+      endMoves ? this.seamRounding(2 * c + 1) : this.vertexRounding(piece, 1),
+    );
   }
 
   /** A curve carried on straight turns a little where it is: its piece and what was carried on are two straight pieces. */
-  private addBesideCurve(
-    into: number[],
-    piece: number,
-    growsAtStart: boolean,
-    growsAtEnd: boolean,
-    ax: number,
-    ay: number,
-    bx: number,
-    by: number,
-  ): void {
-    const { pieces, slackMm } = this.draft;
+  private shapesBesideCurve(piece: number, growsAtStart: boolean, growsAtEnd: boolean): PieceShape[] {
+    const { pieces } = this.draft;
     const c = pieces.centreline[piece];
     const from = this.kept.from[c];
     const to = this.kept.to[c];
@@ -85,49 +80,44 @@ export class KeptStrips {
     const outOf = (end: number): Rounding => sectorTo(pieces.outX[end], pieces.outY[end]);
     const ux = (pieces.x2[piece] - pieces.x1[piece]) / pieces.length[piece];
     const uy = (pieces.y2[piece] - pieces.y1[piece]) / pieces.length[piece];
-    this.addShape(into, c, low, high, ax, ay, bx, by, {
-      atStart: growsAtStart
-        ? outOf(2 * c)
-        : low === start
-          ? roundingAt(pieces, piece, -1, this.ends, slackMm, from, to)
-          : null,
-      atEnd: growsAtEnd
-        ? outOf(2 * c + 1)
-        : high === end
-          ? roundingAt(pieces, piece, 1, this.ends, slackMm, from, to)
-          : null,
-    });
-    if (growsAtStart) {
-      const atStart = roundingAtSeam(pieces, 2 * c, this.ends, slackMm);
-      this.addShape(into, c, from, start, ax, ay, bx, by, { atStart, atEnd: sectorTo(ux, uy) });
-    }
-    if (growsAtEnd) {
-      const atEnd = roundingAtSeam(pieces, 2 * c + 1, this.ends, slackMm);
-      this.addShape(into, c, end, to, ax, ay, bx, by, { atStart: sectorTo(-ux, -uy), atEnd });
-    }
+    const atLow = low === start ? this.vertexRounding(piece, -1) : null;
+    const atHigh = high === end ? this.vertexRounding(piece, 1) : null;
+    const shapes = this.shape(
+      c,
+      low,
+      high,
+      growsAtStart ? outOf(2 * c) : atLow,
+      growsAtEnd ? outOf(2 * c + 1) : atHigh,
+    );
+    if (growsAtStart) shapes.push(...this.shape(c, from, start, this.seamRounding(2 * c), sectorTo(ux, uy)));
+    if (growsAtEnd) shapes.push(...this.shape(c, end, to, sectorTo(-ux, -uy), this.seamRounding(2 * c + 1)));
+    return shapes;
   }
 
-  /** The straight piece of a centreline between two positions. */
-  private addShape(
-    into: number[],
+  private seamRounding(end: number): Rounding | null {
+    return roundingAtSeam(this.draft.pieces, end, this.ends, this.draft.slackMm);
+  }
+
+  private vertexRounding(piece: number, side: -1 | 1): Rounding | null {
+    const { pieces, slackMm } = this.draft;
+    const c = pieces.centreline[piece];
+    return roundingAt(pieces, piece, side, this.ends, slackMm, this.kept.from[c], this.kept.to[c]);
+  }
+
+  /** The straight piece of a centreline between two positions; none without length. */
+  private shape(
     c: number,
     from: number,
     to: number,
-    ax: number,
-    ay: number,
-    bx: number,
-    by: number,
-    round: Pick<PieceShape, 'atStart' | 'atEnd'>,
-  ): void {
+    atStart: Rounding | null,
+    atEnd: Rounding | null,
+  ): PieceShape[] {
     const { draft } = this;
-    const p = { x: 0, y: 0 };
-    const q = { x: 0, y: 0 };
-    pointAt(draft, c, from, p);
-    pointAt(draft, c, to, q);
+    const p = pointAt(draft, c, from);
+    const q = pointAt(draft, c, to);
     const length = Math.hypot(q.x - p.x, q.y - p.y);
-    if (length === 0) return;
-    const half = draft.pieces.half[pieceAt(draft.pieces, c, Math.max(0, from))];
-    const shape: PieceShape = { px: p.x, py: p.y, qx: q.x, qy: q.y, length, half, ...round, ...STRAIGHT };
-    addShapeStretches(into, shape, ax, ay, bx, by, draft.slackMm);
+    if (length === 0) return [];
+    const half = draft.pieces.half[draft.pieces.firstPiece[c]];
+    return [{ px: p.x, py: p.y, qx: q.x, qy: q.y, length, half, atStart, atEnd, ...STRAIGHT }];
   }
 }

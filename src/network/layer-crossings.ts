@@ -1,9 +1,9 @@
 import type { Port } from '../chip/types.ts';
 import type { Nearness } from '../geometry/near.ts';
-import { type Pieces, pieceAt } from '../geometry/pieces.ts';
-import { distanceToSegment, nearestParameter } from '../geometry/segment.ts';
-import { findBundles } from './bundles.ts';
-import { toEnds } from './draft.ts';
+import { distanceToPiece, nearestShare } from '../geometry/on-piece.ts';
+import { neighbourPiece, type Pieces, pieceAt } from '../geometry/pieces.ts';
+import { bundleAt, findBundles } from './bundles.ts';
+import { type Point, toEnds } from './draft.ts';
 
 /** A place where channels of two layers cross in one plane and both go on beyond the other's strip. */
 export interface LayerCrossing {
@@ -57,9 +57,7 @@ function inOrder(pieces: Pieces, i: number, j: number, layerOf: (channel: number
   return layerOf(pieces.channel[i]) <= layerOf(pieces.channel[j]) ? [i, j] : [j, i];
 }
 
-interface Place {
-  readonly x: number;
-  readonly y: number;
+interface Place extends Point {
   /** Positions on the two centrelines, mm. */
   readonly s: number;
   readonly t: number;
@@ -79,12 +77,11 @@ function crossingOf(pieces: Pieces, i: number, j: number, slackMm: number): Plac
   const along = Math.min(length[i], Math.max(0, (wx * vy - wy * vx) / cross));
   const x = x1[i] + along * ux;
   const y = y1[i] + along * uy;
-  const share = nearestParameter(x, y, x1[j], y1[j], x2[j], y2[j]);
-  if (distanceToSegment(x, y, x1[j], y1[j], x2[j], y2[j]) > slackMm) return null;
-  return { x, y, s: start[i] + along, t: start[j] + share * length[j] };
+  if (distanceToPiece(pieces, j, x, y) > slackMm) return null;
+  return { x, y, s: start[i] + along, t: start[j] + nearestShare(pieces, j, x, y) * length[j] };
 }
 
-function isInWell({ xMm, yMm, radiusMm }: Port, { x, y }: Place): boolean {
+function isInWell({ xMm, yMm, radiusMm }: Port, { x, y }: Point): boolean {
   return Math.hypot(x - xMm, y - yMm) <= radiusMm;
 }
 
@@ -106,7 +103,7 @@ const MOST_SEAMS = 64;
 /** Answers whether a centreline leaves the strip of a piece on both sides of a place. */
 function walker(near: Nearness, slackMm: number, layerOf: (channel: number) => number) {
   const { pieces } = near;
-  const { of, first, member } = findBundles(near, toEnds(pieces), slackMm);
+  const bundles = findBundles(near, toEnds(pieces), slackMm);
 
   return (c: number, s: number, across: number): boolean =>
     !endsAt(c, s) && leaves(c, s, 1, across, new Set()) && leaves(c, s, -1, across, new Set());
@@ -118,17 +115,12 @@ function walker(near: Nearness, slackMm: number, layerOf: (channel: number) => n
 
   /** Whether the way on from a place comes out of the strip, over seams with other strokes of the layer. */
   function leaves(c: number, s: number, direction: 1 | -1, across: number, passed: Set<number>): boolean {
-    const first = pieces.firstPiece[c];
-    const last = pieces.firstPiece[c + 1] - 1;
-    const begin = pieceAt(pieces, c, s);
-    for (let k = 0; k <= last - first; k++) {
-      const at = begin + direction * k;
-      const isBeyond = at < first || at > last;
-      if (isBeyond && pieces.centrelineClosed[c] === 0) break;
-      const i = at < first ? at + last - first + 1 : at > last ? at - (last - first + 1) : at;
+    let i = pieceAt(pieces, c, s);
+    for (let count = pieces.firstPiece[c + 1] - pieces.firstPiece[c]; count > 0 && i >= 0; count--) {
       const x = direction === 1 ? pieces.x2[i] : pieces.x1[i];
       const y = direction === 1 ? pieces.y2[i] : pieces.y1[i];
-      if (distanceTo(across, x, y) > pieces.half[across] + slackMm) return true;
+      if (distanceToPiece(pieces, across, x, y) > pieces.half[across] + slackMm) return true;
+      i = neighbourPiece(pieces, i, direction);
     }
     if (pieces.centrelineClosed[c] === 1) return false;
     const end = direction === 1 ? 2 * c + 1 : 2 * c;
@@ -143,16 +135,10 @@ function walker(near: Nearness, slackMm: number, layerOf: (channel: number) => n
   }
 
   /** Ends of other strokes of the layer at the place of an end. */
-  function seamsAt(end: number): number[] {
-    const head = of[end];
-    if (head < 0) return [];
+  function seamsAt(end: number): Int32Array {
     const layer = layerOf(pieces.centrelineChannel[end >> 1]);
-    return [...member.subarray(first[head], first[head + 1])].filter(
+    return bundleAt(bundles, end).filter(
       (other) => other !== end && layerOf(pieces.centrelineChannel[other >> 1]) === layer,
     );
-  }
-
-  function distanceTo(i: number, x: number, y: number): number {
-    return distanceToSegment(x, y, pieces.x1[i], pieces.y1[i], pieces.x2[i], pieces.y2[i]);
   }
 }

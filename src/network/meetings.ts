@@ -1,3 +1,4 @@
+import { distanceToPiece, nearestShare, placeOn, sineBetween } from '../geometry/on-piece.ts';
 import {
   endsAtVertex,
   goesOnSmoothly,
@@ -5,8 +6,7 @@ import {
   type Pieces,
   startsAtVertex,
 } from '../geometry/pieces.ts';
-import { distanceToSegment, nearestParameter } from '../geometry/segment.ts';
-import type { Draft } from './draft.ts';
+import { type Draft, ROUNDING_MM } from './draft.ts';
 
 /**
  * Rule 2: two centrelines, or two stretches of one, join where they meet or cross, drawn vertex or not.
@@ -56,11 +56,9 @@ function markCrossing(draft: Draft, i: number, j: number): boolean {
  * beside the other it tells the place; an end that does is joined by rule 3.
  */
 function hasOpenEndBeside({ pieces, slackMm }: Draft, i: number, j: number): boolean {
-  const isBeside = (x: number, y: number, k: number): boolean =>
-    distanceToSegment(x, y, pieces.x1[k], pieces.y1[k], pieces.x2[k], pieces.y2[k]) <= slackMm;
   const endsBeside = (k: number, other: number): boolean =>
-    (!startsAtVertex(pieces, k) && isBeside(pieces.x1[k], pieces.y1[k], other)) ||
-    (!endsAtVertex(pieces, k) && isBeside(pieces.x2[k], pieces.y2[k], other));
+    (!startsAtVertex(pieces, k) && distanceToPiece(pieces, other, pieces.x1[k], pieces.y1[k]) <= slackMm) ||
+    (!endsAtVertex(pieces, k) && distanceToPiece(pieces, other, pieces.x2[k], pieces.y2[k]) <= slackMm);
   return endsBeside(i, j) || endsBeside(j, i);
 }
 
@@ -81,20 +79,12 @@ function markTouches(draft: Draft, i: number, j: number): void {
 
 function markTouch(draft: Draft, i: number, s: number, x: number, y: number, j: number): void {
   const { pieces, slackMm } = draft;
-  const ax = pieces.x1[j];
-  const ay = pieces.y1[j];
-  const bx = pieces.x2[j];
-  const by = pieces.y2[j];
-  if (distanceToSegment(x, y, ax, ay, bx, by) > slackMm) return;
-  const t = nearestParameter(x, y, ax, ay, bx, by);
-  const awayX = x - (ax + t * (bx - ax));
-  const awayY = y - (ay + t * (by - ay));
-  if (isPassedOnCurve(pieces, i, s, j, awayX, awayY)) return;
+  if (distanceToPiece(pieces, j, x, y) > slackMm) return;
+  const t = nearestShare(pieces, j, x, y);
+  const nearest = placeOn(pieces, j, t);
+  if (isPassedOnCurve(pieces, i, s, j, x - nearest.x, y - nearest.y)) return;
   addMeeting(draft, i, s, j, t);
 }
-
-/** Nearer than this a vertex is on a piece: which way the distance grows is only rounding. */
-const ON_IT_MM = 1e-9;
 
 /** Two pieces that differ by less in direction lie on each other. */
 const SAME_DIRECTION_SINE = 1e-6;
@@ -115,9 +105,8 @@ function isPassedOnCurve(
   if (next < 0 || !goesOnSmoothly(pieces, i, next)) return false;
   const [before, after] = s === 0 ? [next, i] : [i, next];
   const isFineCut = pieces.chord[before] === pieces.chord[after];
-  if (Math.hypot(awayX, awayY) <= ON_IT_MM) {
-    return isFineCut && lieAlong(pieces, i, j);
-  }
+  // On the piece: which way the distance grows is only rounding.
+  if (Math.hypot(awayX, awayY) <= ROUNDING_MM) return isFineCut && lieAlong(pieces, i, j);
   // Seen across piece j: its nearest point may be a vertex, though its curve goes on and passes nearer.
   const side = (pieces.x2[j] - pieces.x1[j]) * awayY - (pieces.y2[j] - pieces.y1[j]) * awayX;
   const arriving = side * sineBetween(pieces, j, before);
@@ -128,14 +117,6 @@ function isPassedOnCurve(
 /** Whether two pieces run in one direction, but for rounding: where they meet they lie on each other, and need not cross. */
 export function lieAlong(pieces: Pieces, i: number, j: number): boolean {
   return Math.abs(sineBetween(pieces, i, j)) <= SAME_DIRECTION_SINE;
-}
-
-function sineBetween(pieces: Pieces, i: number, j: number): number {
-  const ux = pieces.x2[i] - pieces.x1[i];
-  const uy = pieces.y2[i] - pieces.y1[i];
-  const vx = pieces.x2[j] - pieces.x1[j];
-  const vy = pieces.y2[j] - pieces.y1[j];
-  return (ux * vy - uy * vx) / (pieces.length[i] * pieces.length[j]);
 }
 
 function addMeeting(draft: Draft, i: number, s: number, j: number, t: number): void {

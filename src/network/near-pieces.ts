@@ -1,9 +1,10 @@
 import type { Chip } from '../chip/types.ts';
 import { FINE_MM } from '../geometry/curve.ts';
 import { cutFinely } from '../geometry/fine-cuts.ts';
-import { findNearPairs, type Nearness } from '../geometry/near.ts';
-import { type Pieces, toPieces } from '../geometry/pieces.ts';
-import { distanceToSegment } from '../geometry/segment.ts';
+import { findNearPairs, type Nearness, piecesNear } from '../geometry/near.ts';
+import { distanceToPiece } from '../geometry/on-piece.ts';
+import { endPiece, type Pieces, toPieces } from '../geometry/pieces.ts';
+import { toEnds } from './draft.ts';
 
 /**
  * All pieces of a chip and the pairs of them that come near each other. Where a strip or a well comes near a curve, the
@@ -62,21 +63,14 @@ function isOneRun(pieces: Pieces, i: number, j: number, distance: number): boole
 /** An end in the strip of a curve may be carried on by up to that strip's width, also beyond the chord that it is near. */
 function markAroundEnds(chip: Chip, near: Nearness, cut: Uint8Array): void {
   const { pieces, index } = near;
-  for (let c = 0; c < pieces.centrelineCount; c++) {
-    if (pieces.centrelineClosed[c] === 1) continue;
-    const first = pieces.firstPiece[c];
-    const last = pieces.firstPiece[c + 1] - 1;
-    markAround(first, pieces.x1[first], pieces.y1[first]);
-    markAround(last, pieces.x2[last], pieces.y2[last]);
-  }
-
-  function markAround(own: number, x: number, y: number): void {
-    for (let k = near.firstPair[own]; k < near.firstPair[own + 1]; k++) {
-      const pair = near.pairOf[k];
-      const other = near.pairA[pair] === own ? near.pairB[pair] : near.pairA[pair];
+  const ends = toEnds(pieces);
+  for (let end = 0; end < 2 * pieces.centrelineCount; end++) {
+    if (pieces.centrelineClosed[end >> 1] === 1) continue;
+    const [x, y] = [ends.x[end], ends.y[end]];
+    for (const other of piecesNear(near, endPiece(pieces, end))) {
       if (!pieces.curves.has(other)) continue;
       const strip = pieces.half[other] + chip.joinWithinMm + pieces.bulge[other];
-      if (distanceTo(pieces, other, x, y) > strip) continue;
+      if (distanceToPiece(pieces, other, x, y) > strip) continue;
       const reach = 2 * strip;
       const found = index?.search(x - reach, y - reach, x + reach, y + reach, (i) => pieces.curves.has(i));
       for (const i of found ?? []) if (pieces.channel[i] === pieces.channel[other]) cut[i] = 1;
@@ -88,11 +82,7 @@ function markAtWells(chip: Chip, { pieces, index }: Nearness, cut: Uint8Array): 
   for (const { xMm, yMm, radiusMm } of chip.ports) {
     const r = radiusMm + chip.joinWithinMm;
     for (const i of index?.search(xMm - r, yMm - r, xMm + r, yMm + r) ?? []) {
-      if (distanceTo(pieces, i, xMm, yMm) <= r + pieces.half[i] + pieces.bulge[i]) mark(pieces, cut, i);
+      if (distanceToPiece(pieces, i, xMm, yMm) <= r + pieces.half[i] + pieces.bulge[i]) mark(pieces, cut, i);
     }
   }
-}
-
-function distanceTo(pieces: Pieces, i: number, x: number, y: number): number {
-  return distanceToSegment(x, y, pieces.x1[i], pieces.y1[i], pieces.x2[i], pieces.y2[i]);
 }

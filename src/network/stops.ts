@@ -1,3 +1,4 @@
+import { firstOfGroups, itemsOf, toGroups } from '../groups.ts';
 import { type Draft, END_JOINED, endPosition } from './draft.ts';
 
 /**
@@ -17,18 +18,21 @@ export interface Stops {
   readonly isWell: Uint8Array;
 }
 
+/** The stop nearest to an end of its centreline, which has one. */
+export function outermostStop({ firstStop }: Stops, end: number): number {
+  return (end & 1) === 0 ? firstStop[end >> 1] : firstStop[(end >> 1) + 1] - 1;
+}
+
+/** Where a stop begins, seen from an end of its centreline. */
+export function stopPosition({ from, to }: Stops, stop: number, end: number): number {
+  return (end & 1) === 0 ? from[stop] : to[stop];
+}
+
 /** Sorts the marks of each centreline and unites the nodes of those that lie within slack of each other. */
 export function toStops(draft: Draft): Stops {
   const { marks, pieces, nodes, slackMm } = draft;
   const n = marks.node.length;
-  const first = new Int32Array(pieces.centrelineCount + 1);
-  for (let m = 0; m < n; m++) first[marks.centreline[m] + 1]++;
-  for (let c = 0; c < pieces.centrelineCount; c++) first[c + 1] += first[c];
-  const order = new Int32Array(n);
-  const fill = first.slice();
-  for (let m = 0; m < n; m++) order[fill[marks.centreline[m]]++] = m;
-
-  const firstStop = new Int32Array(pieces.centrelineCount + 1);
+  const byCentreline = toGroups(pieces.centrelineCount, marks.centreline);
   const centreline = new Int32Array(n);
   const from = new Float64Array(n);
   const to = new Float64Array(n);
@@ -36,8 +40,7 @@ export function toStops(draft: Draft): Stops {
   const isWell = new Uint8Array(n);
   let count = 0;
   for (let c = 0; c < pieces.centrelineCount; c++) {
-    firstStop[c] = count;
-    const own = order.subarray(first[c], first[c + 1]);
+    const own = itemsOf(byCentreline, c);
     if (own.length > 1)
       own.sort((a, b) => marks.from[a] - marks.from[b] || marks.to[a] - marks.to[b] || a - b);
     const middle = shortStrokeMiddle(draft, c, own);
@@ -70,7 +73,7 @@ export function toStops(draft: Draft): Stops {
       k = next;
     }
   }
-  firstStop[pieces.centrelineCount] = count;
+  const firstStop = firstOfGroups(pieces.centrelineCount, centreline.subarray(0, count));
   uniteRoundStart(draft, firstStop, from, to, node);
   return {
     count,
@@ -123,32 +126,4 @@ function uniteRoundStart(
     if (to[b] === from[b]) moveTo(pieces.centrelineLength[c], b);
     else to[b] = pieces.centrelineLength[c];
   }
-}
-
-/** For each node, the stops that belong to it. */
-export interface NodeStops {
-  readonly first: Int32Array;
-  readonly stop: Int32Array;
-}
-
-/** Lists the stops of every node (by root), leaving out those beyond the kept range of their centreline. */
-export function stopsByNode(
-  draft: Draft,
-  stops: Stops,
-  keptFrom: Float64Array,
-  keptTo: Float64Array,
-): NodeStops {
-  const size = draft.nodes.size;
-  const first = new Int32Array(size + 1);
-  const root = new Int32Array(stops.count);
-  for (let k = 0; k < stops.count; k++) {
-    const c = stops.centreline[k];
-    root[k] = stops.to[k] < keptFrom[c] || stops.from[k] > keptTo[c] ? -1 : draft.nodes.find(stops.node[k]);
-    if (root[k] >= 0) first[root[k] + 1]++;
-  }
-  for (let i = 0; i < size; i++) first[i + 1] += first[i];
-  const fill = first.slice();
-  const stop = new Int32Array(first[size]);
-  for (let k = 0; k < stops.count; k++) if (root[k] >= 0) stop[fill[root[k]]++] = k;
-  return { first, stop };
 }

@@ -1,8 +1,10 @@
 import type { Port } from '../chip/types.ts';
+import { piecesNear } from '../geometry/near.ts';
+import { besidePiece, distanceToPiece, nearestShare, placeOn } from '../geometry/on-piece.ts';
+import { endPiece } from '../geometry/pieces.ts';
 import { ROUND, type Rounding } from '../geometry/rounding.ts';
-import { distanceToSegment, nearestParameter } from '../geometry/segment.ts';
 import { roundingAt } from '../geometry/strip.ts';
-import { type Draft, END_IN_PORT, endPiece, endPosition } from './draft.ts';
+import { type Draft, END_IN_PORT, endPosition } from './draft.ts';
 
 /**
  * Rule 6: all centreline inside a port's circle is open well. An end inside it joins that port. A centreline that only
@@ -30,14 +32,7 @@ function markWell(draft: Draft, port: Port, p: number): void {
       reached.add(c);
       continue;
     }
-    const distance = distanceToSegment(
-      port.xMm,
-      port.yMm,
-      pieces.x1[i],
-      pieces.y1[i],
-      pieces.x2[i],
-      pieces.y2[i],
-    );
+    const distance = distanceToPiece(pieces, i, port.xMm, port.yMm);
     if (distance > port.radiusMm + pieces.half[i] + slackMm) continue;
     const known = overlapped.get(c);
     if ((known === undefined || distance < known.distance) && circleTouchesStrip(draft, port, i)) {
@@ -46,15 +41,7 @@ function markWell(draft: Draft, port: Port, p: number): void {
   }
   for (const [c, { piece }] of overlapped) {
     if (reached.has(c)) continue;
-    const t = nearestParameter(
-      port.xMm,
-      port.yMm,
-      pieces.x1[piece],
-      pieces.y1[piece],
-      pieces.x2[piece],
-      pieces.y2[piece],
-    );
-    const s = pieces.start[piece] + t * pieces.length[piece];
+    const { s } = placeOn(pieces, piece, nearestShare(pieces, piece, port.xMm, port.yMm));
     if (goesOnNearer(draft, overlapped, reached, c, s)) continue;
     draft.marks.addWell(c, s, s, p);
     markEndReached(draft, c, s, s);
@@ -79,38 +66,21 @@ function goesOnNearer(
   if (pieces.centrelineClosed[c] === 1) return false;
   const end = s === 0 ? 2 * c : s === pieces.centrelineLength[c] ? 2 * c + 1 : -1;
   if (end < 0) return false;
-  const own = endPiece(pieces, end);
   const distance = overlapped.get(c)?.distance ?? 0;
-  for (let k = near.firstPair[own]; k < near.firstPair[own + 1]; k++) {
-    const pair = near.pairOf[k];
-    const i = near.pairA[pair] === own ? near.pairB[pair] : near.pairA[pair];
+  return piecesNear(near, endPiece(pieces, end)).some((i) => {
     const other = pieces.centreline[i];
     const nearer = overlapped.get(other)?.distance ?? Number.POSITIVE_INFINITY;
     if (other === c || !(reached.has(other) || nearer < distance || (nearer === distance && other < c)))
-      continue;
-    const gap = distanceToSegment(
-      ends.x[end],
-      ends.y[end],
-      pieces.x1[i],
-      pieces.y1[i],
-      pieces.x2[i],
-      pieces.y2[i],
-    );
-    if (gap <= slackMm) return true;
-  }
-  return false;
+      return false;
+    return distanceToPiece(pieces, i, ends.x[end], ends.y[end]) <= slackMm;
+  });
 }
 
 /** Marks the stretch of one piece inside the circle (or touching it within slack); false when there is none. */
 function markInside(draft: Draft, port: Port, p: number, i: number): boolean {
   const { pieces, slackMm, ends } = draft;
   const c = pieces.centreline[i];
-  const ux = (pieces.x2[i] - pieces.x1[i]) / pieces.length[i];
-  const uy = (pieces.y2[i] - pieces.y1[i]) / pieces.length[i];
-  const wx = port.xMm - pieces.x1[i];
-  const wy = port.yMm - pieces.y1[i];
-  const along = wx * ux + wy * uy;
-  const across = wy * ux - wx * uy;
+  const { ux, uy, along, across } = besidePiece(pieces, i, port.xMm, port.yMm);
   const halfChordSquared = (port.radiusMm - across) * (port.radiusMm + across);
   if (halfChordSquared > 0) {
     const halfChord = Math.sqrt(halfChordSquared);
@@ -133,7 +103,7 @@ function markInside(draft: Draft, port: Port, p: number, i: number): boolean {
       ? -1
       : s === 0
         ? 2 * c
-        : t === pieces.length[i] && isLast(draft, i)
+        : t === pieces.length[i] && i === endPiece(pieces, 2 * c + 1)
           ? 2 * c + 1
           : -1;
   if (end >= 0 && ends.state[end] !== END_IN_PORT) {
@@ -151,10 +121,6 @@ function markInside(draft: Draft, port: Port, p: number, i: number): boolean {
   return true;
 }
 
-function isLast(draft: Draft, i: number): boolean {
-  return i === draft.pieces.firstPiece[draft.pieces.centreline[i] + 1] - 1;
-}
-
 /** An end inside a port's circle joins that port and nothing else. */
 function markEndReached(draft: Draft, c: number, from: number, to: number): void {
   const { pieces, ends } = draft;
@@ -166,22 +132,20 @@ function markEndReached(draft: Draft, c: number, from: number, to: number): void
 /** Whether circle and strip of one piece have a point in common: the strip's nearest point to the centre decides. */
 function circleTouchesStrip(draft: Draft, port: Port, i: number): boolean {
   const { pieces, slackMm } = draft;
+  const { ux, uy, ...at } = besidePiece(pieces, i, port.xMm, port.yMm);
   const length = pieces.length[i];
-  const ux = (pieces.x2[i] - pieces.x1[i]) / length;
-  const uy = (pieces.y2[i] - pieces.y1[i]) / length;
-  const wx = port.xMm - pieces.x1[i];
-  const wy = port.yMm - pieces.y1[i];
-  const along = Math.min(length, Math.max(0, wx * ux + wy * uy));
-  const across = wy * ux - wx * uy;
-  const clamped = Math.min(pieces.half[i], Math.max(-pieces.half[i], across));
+  const along = Math.min(length, Math.max(0, at.along));
+  const clamped = Math.min(pieces.half[i], Math.max(-pieces.half[i], at.across));
   const nx = pieces.x1[i] + along * ux - clamped * uy;
   const ny = pieces.y1[i] + along * uy + clamped * ux;
   if (Math.hypot(nx - port.xMm, ny - port.yMm) <= port.radiusMm + slackMm) return true;
   // Outside the corner of an inner vertex the strip is round: the distance to the vertex, already compared, decides; where it
   // is but a sector, the centre must lie before it too, or the next piece decides.
-  const isBefore = (rounding: Rounding | null, x: number, y: number): boolean =>
-    rounding !== null && (rounding === ROUND || x * rounding.onX + y * rounding.onY <= slackMm);
-  if (along === 0) return isBefore(roundingAt(pieces, i, -1, null, slackMm), wx, wy);
+  const isBefore = (rounding: Rounding | null, vertexX: number, vertexY: number): boolean =>
+    rounding !== null &&
+    (rounding === ROUND ||
+      (port.xMm - vertexX) * rounding.onX + (port.yMm - vertexY) * rounding.onY <= slackMm);
+  if (along === 0) return isBefore(roundingAt(pieces, i, -1, null, slackMm), pieces.x1[i], pieces.y1[i]);
   const atEnd = along === length ? roundingAt(pieces, i, 1, null, slackMm) : null;
-  return isBefore(atEnd, port.xMm - pieces.x2[i], port.yMm - pieces.y2[i]);
+  return isBefore(atEnd, pieces.x2[i], pieces.y2[i]);
 }

@@ -29,7 +29,7 @@ export interface DuctFactors {
   readonly sidePeak: number;
 }
 
-/** Everything about a cross-section that does not depend on fluid or flow; memoise it per width and depth. */
+/** Everything about a cross-section that does not depend on fluid or flow. A chip keeps one of each (`Chip.sections`). */
 export interface DuctForm extends DuctFactors {
   readonly widthM: number;
   readonly depthM: number;
@@ -74,22 +74,6 @@ export function ductForm(widthM: number, depthM: number): DuctForm {
     byWidth: onWalls(floorIsLong ? byLong : byShort, floorIsLong),
     byDepth: onWalls(floorIsLong ? byShort : byLong, floorIsLong),
   };
-}
-
-/**
- * Resistance per length, Pa s/m³ per m, of a duct (m, m) at a viscosity (Pa s).
- * @throws RangeError when a side or the viscosity is not a positive finite number.
- */
-export function resistancePerLength(widthM: number, depthM: number, viscosityPaS: number): number {
-  if (!(viscosityPaS > 0 && viscosityPaS < Infinity)) {
-    throw new RangeError(`a viscosity must be above 0 Pa s and finite, not ${viscosityPaS}`);
-  }
-  return viscosityPaS * ductForm(widthM, depthM).resistance;
-}
-
-/** Pressure gradient G (Pa/m) that drives a flow (m³/s) of a fluid (Pa s) through a duct: G = µ Q R/(µL). */
-export function gradientOf(form: DuctForm, viscosityPaS: number, flowM3s: number): number {
-  return viscosityPaS * form.resistance * flowM3s;
 }
 
 /**

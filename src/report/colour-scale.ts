@@ -1,4 +1,5 @@
 import { interpolateCividis } from 'd3-scale-chromatic';
+import { formatNumber } from '../runsheet/shown.ts';
 
 /**
  * Cividis: its lightness rises evenly, so it reads the same for colour-blind people and in grey (J. R. Nuñez, C. R. Anderton &
@@ -101,6 +102,15 @@ export function niceStep(rough: number): number {
   const power = 10 ** Math.floor(Math.log10(rough));
   const [one] = [1, 2, 5, 10].filter((factor) => factor * power >= rough * (1 - 1e-9));
   return one * power;
+}
+
+/** About five round values along an axis from `low` to `high`, with their texts; an end that rounding moves is still one of them. */
+export function axisTicks(low: number, high: number): { at: number; text: string }[] {
+  const step = niceStep((high - low) / 5);
+  const ticks: { at: number; text: string }[] = [];
+  for (let k = Math.ceil(low / step - 1e-9); k * step <= high + 1e-9 * step; k++)
+    ticks.push({ at: k * step, text: formatNumber(k * step) });
+  return ticks;
 }
 
 function hexOf(rgb: string): string {

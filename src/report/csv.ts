@@ -1,3 +1,4 @@
+import { inChunks } from './chunks.ts';
 import type { ReachRow, SegmentRow } from './result-rows.ts';
 import { reachColumns, segmentColumns } from './result-schema.ts';
 
@@ -5,32 +6,29 @@ import { reachColumns, segmentColumns } from './result-schema.ts';
  * CSV after RFC 4180 (CRLF, quotes doubled) in chunks; the first line holds the JSON keys, units included. Numbers are SI and shortest
  * round-trip; null is an empty cell. A text cell that a spreadsheet would run as a formula starts with an apostrophe instead.
  */
-export function* writeReachesCsv(reaches: Iterable<ReachRow>): Generator<string> {
-  yield* table(reachColumns, reaches);
+export function writeReachesCsv(reaches: Iterable<ReachRow>): Generator<string> {
+  return table(reachColumns, reaches);
 }
 
 /** As `writeReachesCsv`, for segments. */
-export function* writeSegmentsCsv(segments: Iterable<SegmentRow>): Generator<string> {
-  yield* table(segmentColumns, segments);
+export function writeSegmentsCsv(segments: Iterable<SegmentRow>): Generator<string> {
+  return table(segmentColumns, segments);
 }
 
 /** CSV with the given columns, for any rows of texts, numbers and null. */
-export function* table<Key extends string>(
+export function table<Key extends string>(
   columns: readonly Key[],
   rows: Iterable<{ readonly [key in Key]: string | number | null }>,
 ): Generator<string> {
-  let pending = `${columns.map(textCell).join(',')}\r\n`;
-  for (const row of rows) {
-    let line = '';
-    for (const column of columns)
-      line += `${line === '' && column === columns[0] ? '' : ','}${cell(row[column], column)}`;
-    pending += `${line}\r\n`;
-    if (pending.length >= 65_536) {
-      yield pending;
-      pending = '';
-    }
-  }
-  yield pending;
+  return inChunks(tableLines(columns, rows));
+}
+
+function* tableLines<Key extends string>(
+  columns: readonly Key[],
+  rows: Iterable<{ readonly [key in Key]: string | number | null }>,
+): Generator<string> {
+  yield `${columns.map(textCell).join(',')}\r\n`;
+  for (const row of rows) yield `${columns.map((column) => cell(row[column], column)).join(',')}\r\n`;
 }
 
 function cell(value: string | number | null, column: string): string {

@@ -1,5 +1,5 @@
+import { countText } from '../findings/words.ts';
 import type { JointSummary } from '../network/joint-types.ts';
-import { plural } from './verdict-line.ts';
 
 const UNCOMPUTED = ' not computed';
 
@@ -13,7 +13,7 @@ export function jointsText(joints: readonly JointSummary[]): string | null {
   if (total === 0) return null;
   const computed = own.filter((joint) => joint.computed);
   const others = own.filter((joint) => !joint.computed);
-  const done = `${countOf(computed)} of ${plural(total, 'joint')} computed${computed.length === 0 ? '' : ` (${listOf(computed)})`}`;
+  const done = `${countOf(computed)} of ${countText(total, 'joint')} computed${computed.length === 0 ? '' : ` (${listOf(computed)})`}`;
   return others.length === 0 ? done : `${done}; not computed: ${listOf(others)}`;
 }
 

@@ -1,4 +1,5 @@
-import type { CasesResult, Result, SingleResult } from './result.ts';
+import { inChunks } from './chunks.ts';
+import type { Result } from './result.ts';
 
 /** How deep the JSON goes: `ports` has no nodes, reaches and segments; `reaches` no segments. */
 export type Detail = 'ports' | 'reaches' | 'segments';
@@ -7,41 +8,25 @@ export type Detail = 'ports' | 'reaches' | 'segments';
  * The result as JSON text in chunks of about 64 kB, keys in the order of the contract, one table row per line, a newline at the end.
  * Throws a RangeError that names the key when a number is NaN or infinite.
  */
-export function* writeJson(result: Result, detail: Detail = 'segments'): Generator<string> {
-  let pending = '';
-  for (const piece of documentPieces(result, detail)) {
-    pending += piece;
-    if (pending.length >= 65_536) {
-      yield pending;
-      pending = '';
-    }
-  }
-  yield `${pending}\n`;
+export function writeJson(result: Result, detail: Detail = 'segments'): Generator<string> {
+  return inChunks(documentPieces(result, detail));
 }
 
 function* documentPieces(result: Result, detail: Detail): Generator<string> {
   if (!('cases' in result)) {
     yield* memberPieces(result, detail, '');
+    yield '\n}\n';
     return;
   }
-  yield* headPieces(result);
-  const indent = '    ';
-  let separator = ',\n  "cases": [\n';
-  for (const one of result.cases) {
-    yield `${separator}${indent}`;
-    yield* memberPieces(one, detail, indent);
-    separator = ',\n';
+  const { cases, ...head } = result;
+  yield* memberPieces(head, detail, '');
+  let separator = ',\n  "cases": [\n    ';
+  for (const one of cases) {
+    yield separator;
+    yield* memberPieces(one, detail, '    ');
+    separator = '\n    },\n    ';
   }
-  yield '\n  ]\n}';
-}
-
-function* headPieces(result: CasesResult): Generator<string> {
-  const { cases: _, ...head } = result;
-  let separator = '{\n';
-  for (const [key, value] of Object.entries(head)) {
-    yield `${separator}  ${JSON.stringify(key)}: ${jsonValue(value, key)}`;
-    separator = ',\n';
-  }
+  yield '\n    }\n  ]\n}\n';
 }
 
 /** Top-level keys whose arrays are written one row per line. */
@@ -52,11 +37,8 @@ const LEFT_OUT: Record<Detail, ReadonlySet<string>> = {
   segments: new Set(),
 };
 
-function* memberPieces(
-  part: Omit<SingleResult, 'layout' | 'tool' | 'run_sheet'>,
-  detail: Detail,
-  indent: string,
-): Generator<string> {
+/** An object's members, its closing brace left open. */
+function* memberPieces(part: object, detail: Detail, indent: string): Generator<string> {
   let separator = '{\n';
   for (const [key, value] of Object.entries(part)) {
     if (LEFT_OUT[detail].has(key) || value === undefined) continue;
@@ -69,7 +51,6 @@ function* memberPieces(
       yield jsonValue(value, key);
     }
   }
-  yield `\n${indent}}`;
 }
 
 function* tablePieces(table: Iterable<unknown>, key: string, indent: string): Generator<string> {
@@ -83,32 +64,12 @@ function* tablePieces(table: Iterable<unknown>, key: string, indent: string): Ge
 
 /** JSON of one value without whitespace; −0 is written as 0. */
 function jsonValue(value: unknown, path: string): string {
-  switch (typeof value) {
-    case 'number':
-      if (!Number.isFinite(value))
-        throw new RangeError(`${path} is ${value}: a result holds finite numbers or null`);
-      return value === 0 ? '0' : String(value);
-    case 'string':
-      return JSON.stringify(value);
-    case 'boolean':
-      return value ? 'true' : 'false';
-    case 'object':
-      if (value === null) return 'null';
-      return Array.isArray(value) ? jsonArray(value, path) : jsonObject(value, path);
-    default:
-      throw new TypeError(`${path} is a ${typeof value}: JSON can't hold it`);
-  }
-}
-
-function jsonArray(values: readonly unknown[], path: string): string {
-  return `[${values.map((value, i) => jsonValue(value, `${path}[${i}]`)).join(',')}]`;
-}
-
-function jsonObject(object: object, path: string): string {
-  let text = '';
-  for (const [key, value] of Object.entries(object)) {
-    if (value === undefined) continue;
-    text += `${text === '' ? '' : ','}${JSON.stringify(key)}:${jsonValue(value, `${path}.${key}`)}`;
-  }
-  return `{${text}}`;
+  return JSON.stringify(value, (key, inner: unknown) => {
+    // JSON.stringify itself would write null
+    if (typeof inner === 'number' && !Number.isFinite(inner))
+      throw new RangeError(
+        `${[path, key].filter(Boolean).join('.')} is ${inner}: a result holds finite numbers or null`,
+      );
+    return inner;
+  });
 }

@@ -1,34 +1,28 @@
+import type { PaperFrame } from './map-frame.ts';
 import { type Box, type ChipGeometry, segmentTouchesBox, stripHalfWidthMm } from './map-geometry.ts';
+import type { MapHole, MapLabel } from './map-types.ts';
 
 /** A text that wants a place near one of its anchors; paper millimetres. */
 export interface LabelWish {
+  readonly kind: MapLabel['kind'];
   readonly text: string;
   readonly widthMm: number;
-  readonly heightMm: number;
+  /** Of its letters; it takes a quarter more. */
+  readonly sizeMm: number;
   /** What to try when this finds no place: the same in fewer letters. */
   readonly shorter?: LabelWish;
   /** Points it may belong to, best first, each with how far from it the label must stay (the strip's or hole's half width). */
   readonly anchors: readonly { readonly x: number; readonly y: number; readonly clear: number }[];
 }
 
-export interface PlacedLabel {
-  readonly wish: LabelWish;
-  readonly box: Box;
-  /** From the label to its anchor, where they are not next to each other. */
-  readonly leader: Line | null;
-}
-
 /** Where labels may not go, besides each other: channels and other obstacles. */
 export interface LabelGround {
   readonly area: Box;
   readonly geometry: ChipGeometry;
-  /** Paper = (drawing − origin) × scale + offset. */
-  readonly toDrawing: (box: Box) => Box;
-  readonly scale: number;
+  readonly frame: PaperFrame;
   /** Least half width that a stroke is painted with, paper mm. */
   readonly leastHalfWidthMm: number;
-  /** Holes, markers and the like, paper mm. */
-  readonly obstacles: readonly Box[];
+  readonly holes: readonly MapHole[];
   /** Lines that no label may lie on, paper mm: x1 y1 x2 y2. */
   readonly lines: readonly Line[];
 }
@@ -48,26 +42,28 @@ const DIRECTIONS: readonly (readonly [number, number])[] = [
 const DISTANCES_MM: readonly number[] = [0, 1.5, 3.5, 6, 9, 13];
 
 /**
- * Places labels in the order given; a later one gives way. No label touches another, an obstacle, a channel or the rim of the area;
- * one that finds no such place is left out (undefined in the answer). A leader that crosses a channel or another leader is taken
+ * Places labels in the order given; a later one gives way. No label touches another, a hole, a channel or the rim of the area;
+ * one that finds no such place is left out. A leader that crosses a channel or another leader is taken
  * only when neither the label nor a shorter one of it can do without. Work per label is bounded.
  */
-export function placeLabels(
-  wishes: readonly LabelWish[],
-  ground: LabelGround,
-): readonly (PlacedLabel | undefined)[] {
-  const taken: Box[] = [...ground.obstacles];
+export function placeLabels(wishes: readonly LabelWish[], ground: LabelGround): readonly MapLabel[] {
+  const placed: MapLabel[] = [];
+  const taken = ground.holes.map(boxOf);
   const leaders: Line[] = [];
-  return wishes.map((wish) => {
-    const placed =
+  for (const wish of wishes) {
+    const label =
       placeShortening(wish, { ground, taken, leaders, crossing: 'none' }) ??
       placeShortening(wish, { ground, taken, leaders, crossing: 'allowed' });
-    if (placed !== undefined) {
-      taken.push(placed.box);
-      if (placed.leader !== null) leaders.push(placed.leader);
-    }
-    return placed;
-  });
+    if (label === undefined) continue;
+    placed.push(label);
+    taken.push(label.box);
+    if (label.leader !== null) leaders.push(label.leader);
+  }
+  return placed;
+}
+
+function boxOf({ x, y, radiusMm }: MapHole): Box {
+  return { x: x - radiusMm, y: y - radiusMm, width: 2 * radiusMm, height: 2 * radiusMm };
 }
 
 interface Surroundings {
@@ -78,7 +74,7 @@ interface Surroundings {
   readonly crossing: 'none' | 'allowed';
 }
 
-function placeShortening(wish: LabelWish, around: Surroundings): PlacedLabel | undefined {
+function placeShortening(wish: LabelWish, around: Surroundings): MapLabel | undefined {
   for (let next: LabelWish | undefined = wish; next !== undefined; next = next.shorter) {
     const placed = placeOne(next, around);
     if (placed !== undefined) return placed;
@@ -88,10 +84,9 @@ function placeShortening(wish: LabelWish, around: Surroundings): PlacedLabel | u
 
 type Line = readonly [number, number, number, number];
 
-function placeOne(
-  wish: LabelWish,
-  { ground, taken, leaders, crossing }: Surroundings,
-): PlacedLabel | undefined {
+function placeOne(wish: LabelWish, { ground, taken, leaders, crossing }: Surroundings): MapLabel | undefined {
+  const { kind, text, sizeMm } = wish;
+  const heightMm = 1.25 * sizeMm;
   const onLine = (box: Box, lines: readonly Line[]): boolean =>
     lines.some(([x1, y1, x2, y2]) => segmentTouchesBox(x1, y1, x2, y2, 0.2, box));
   for (const distance of DISTANCES_MM) {
@@ -100,9 +95,9 @@ function placeOne(
         const away = anchor.clear + GAP_MM + distance;
         const box = {
           x: anchor.x + dx * away + (sign(dx) - 1) * (wish.widthMm / 2),
-          y: anchor.y + dy * away + (sign(dy) - 1) * (wish.heightMm / 2),
+          y: anchor.y + dy * away + (sign(dy) - 1) * (heightMm / 2),
           width: wish.widthMm,
-          height: wish.heightMm,
+          height: heightMm,
         };
         if (!inside(box, ground.area) || taken.some((other) => overlap(box, other))) continue;
         if (onLine(box, ground.lines) || onLine(box, leaders)) continue;
@@ -113,7 +108,7 @@ function placeOne(
           if (leaders.some((other) => linesCross(leader, other))) continue;
           if (crossesChannel(leader, anchor.clear, ground)) continue;
         }
-        return { wish, box, leader };
+        return { kind, text, box, sizeMm, leader };
       }
     }
   }
@@ -143,18 +138,18 @@ function overlap(a: Box, b: Box): boolean {
 }
 
 function touchesChannel(box: Box, ground: LabelGround): boolean {
-  const { geometry, scale, leastHalfWidthMm } = ground;
+  const { geometry, frame, leastHalfWidthMm } = ground;
   const margin = leastHalfWidthMm;
-  const searched = ground.toDrawing({
+  const searched = frame.toDrawing({
     x: box.x - margin,
     y: box.y - margin,
     width: box.width + 2 * margin,
     height: box.height + 2 * margin,
   });
-  const exact = ground.toDrawing(box);
+  const exact = frame.toDrawing(box);
   return geometry.anyPiece(searched, (piece) => {
     const channel = geometry.chip.channels[geometry.pieceChannel[piece]];
-    const reach = Math.max(stripHalfWidthMm(channel), leastHalfWidthMm / scale) + 0.15 / scale;
+    const reach = Math.max(stripHalfWidthMm(channel), leastHalfWidthMm / frame.scale) + 0.15 / frame.scale;
     const [x1, y1, x2, y2] = geometry.pieces.subarray(4 * piece, 4 * piece + 4);
     return segmentTouchesBox(x1, y1, x2, y2, reach, exact);
   });

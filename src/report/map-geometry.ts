@@ -58,10 +58,8 @@ export function chipGeometry(chip: Chip): ChipGeometry {
   for (const { xMm, yMm, radiusMm } of chip.ports) {
     bounds.add(xMm - radiusMm, yMm - radiusMm, xMm + radiusMm, yMm + radiusMm);
   }
-  for (const ring of chip.edge?.rings ?? []) {
-    for (let i = 0; i < ring.length; i += 2) bounds.add(ring[i], ring[i + 1], ring[i], ring[i + 1]);
-  }
-  for (const line of chip.channels.length > 0 ? [] : chip.unreadLines) {
+  const unread = chip.channels.length > 0 ? [] : chip.unreadLines;
+  for (const line of [...(chip.edge?.rings ?? []), ...unread]) {
     for (let i = 0; i < line.length; i += 2) bounds.add(line[i], line[i + 1], line[i], line[i + 1]);
   }
   return {

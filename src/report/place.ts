@@ -2,41 +2,31 @@ import type { Finding } from '../findings/types.ts';
 import { formatNumber } from '../runsheet/shown.ts';
 import { niceStep } from './colour-scale.ts';
 import { type LabelWish, placeLabels } from './label-placement.ts';
-import type { MapHole, MapLabel, MapStroke, ScaleBar } from './map.ts';
-import { shortName } from './map.ts';
+import { labelWish, shortName } from './label-wish.ts';
+import { edgeOn, holesOn, type PaperFrame, paperFrame } from './map-frame.ts';
 import { type Box, type ChipGeometry, stripHalfWidthMm } from './map-geometry.ts';
+import { paintedWidthMm, RIM_COLOUR } from './map-strokes.ts';
+import type { MapHole, MapStroke, Picture, PictureOptions, ScaleBar } from './map-types.ts';
 
-/** A close-up of a finding's place as data; paper millimetres from the picture's upper left corner, everything clipped to it. */
-export interface PlaceDrawing {
-  readonly widthMm: number;
+/** A close-up of a finding's place, everything clipped to it. */
+export interface PlaceDrawing extends Picture {
   /** Of the picture itself; the scale bar stands below it. */
   readonly viewHeightMm: number;
-  readonly scale: number;
-  readonly edge: readonly (readonly number[])[];
   /** Channels in view: rim first, then fill; those the finding names are darker. */
   readonly strokes: readonly MapStroke[];
-  readonly holes: readonly MapHole[];
   /** The distance the finding speaks of. */
   readonly mark: readonly [number, number, number, number] | null;
   /** The place itself. */
   readonly cross: readonly [number, number];
-  readonly labels: readonly MapLabel[];
-  readonly scaleBar: ScaleBar;
 }
 
-export interface PlaceOptions {
-  readonly widthMm: number;
-  readonly heightMm: number;
-  readonly labelSizeMm: number;
-  readonly measure: (text: string, sizeMm: number) => number;
-  readonly readable: (name: string) => string;
+export interface PlaceOptions extends PictureOptions {
   /** Written at the mark. */
   readonly measured: string | null;
 }
 
 const NAMED_COLOUR = '#6f8fb8';
 const OTHER_COLOUR = '#d4d4d4';
-const RIM_COLOUR = '#303030';
 /** Pieces painted at most; a place in the middle of a hundred thousand still shows what is next to it. */
 const PIECE_BOUND = 3000;
 
@@ -51,32 +41,40 @@ export function drawPlace(
   // the scale bar's strip is left free at the foot
   const options = { ...whole, heightMm: whole.heightMm - 3 * whole.labelSizeMm };
   const view = viewOf(geometry, finding, xMm, yMm, options);
-  const scale = options.widthMm / view.width;
-  const x = (value: number): number => (value - view.x) * scale;
-  const y = (value: number): number => (value - view.y) * scale;
+  const frame = paperFrame(view, options.widthMm / view.width);
   const named = new Set(finding.names);
-  const holes = geometry.chip.ports
-    .filter((port) => touches(port.xMm, port.yMm, port.radiusMm, view))
-    .map((port) => ({ name: port.name, x: x(port.xMm), y: y(port.yMm), radiusMm: port.radiusMm * scale }));
-  const { mark } = finding;
+  const holes = holesOn(
+    frame,
+    geometry.chip.ports.filter((port) => touches(port.xMm, port.yMm, port.radiusMm, view)),
+  );
   const pieces = geometry
     .piecesIn(view)
     .slice(0, PIECE_BOUND)
     .sort((a, b) => a - b);
+  const mark = markLine(finding, frame);
   return {
     widthMm: options.widthMm,
     viewHeightMm: options.heightMm,
-    scale,
-    edge: (geometry.chip.edge?.rings ?? []).map((ring) =>
-      Array.from(ring, (value, i) => (i % 2 === 0 ? x(value) : y(value))),
-    ),
-    strokes: strokesOf(geometry, pieces, named, x, y, scale),
+    edge: edgeOn(frame, geometry.chip),
+    strokes: strokesOf(geometry, pieces, named, frame),
     holes,
-    mark: mark === undefined ? null : [x(mark.x1Mm), y(mark.y1Mm), x(mark.x2Mm), y(mark.y2Mm)],
-    cross: [x(xMm), y(yMm)],
-    labels: labelsOf(geometry, finding, pieces, holes, view, scale, options),
-    scaleBar: scaleBarOf(scale, options),
+    mark,
+    cross: [frame.x(xMm), frame.y(yMm)],
+    labels: placeLabels(labelWishes(geometry, named, pieces, holes, view, frame, options), {
+      area: { x: 0.4, y: 0.4, width: options.widthMm - 0.8, height: options.heightMm - 0.8 },
+      geometry,
+      frame,
+      leastHalfWidthMm: 0.3,
+      holes,
+      lines: mark === null ? [] : [mark],
+    }),
+    scaleBar: scaleBarOf(frame.scale, options),
   };
+}
+
+/** The distance marked, on paper. */
+function markLine({ mark }: Finding, { x, y }: PaperFrame): PlaceDrawing['mark'] {
+  return mark === undefined ? null : [x(mark.x1Mm), y(mark.y1Mm), x(mark.x2Mm), y(mark.y2Mm)];
 }
 
 /** Round the place: some widths of the widest channel concerned, and all of the distance marked. */
@@ -117,9 +115,7 @@ function strokesOf(
   { chip, pieces, pieceChannel }: ChipGeometry,
   inView: readonly number[],
   named: ReadonlySet<string>,
-  x: (value: number) => number,
-  y: (value: number) => number,
-  scale: number,
+  { x, y, scale }: PaperFrame,
 ): MapStroke[] {
   const runs: { channel: number; points: number[]; last: number }[] = [];
   for (const piece of inView) {
@@ -139,7 +135,7 @@ function strokesOf(
   }
   const stroke = (run: (typeof runs)[number], rim: number, colour: string): MapStroke => ({
     points: run.points,
-    widthMm: Math.max(2 * stripHalfWidthMm(chip.channels[run.channel]) * scale, 0.3) + rim,
+    widthMm: paintedWidthMm(chip.channels[run.channel], scale) + rim,
     colour,
     cap: chip.channels[run.channel].linecap,
   });
@@ -155,65 +151,31 @@ function joins(points: readonly number[], x: number, y: number): boolean {
   return Math.abs(points[points.length - 2] - x) < 1e-6 && Math.abs(points[points.length - 1] - y) < 1e-6;
 }
 
-function labelsOf(
+function labelWishes(
   geometry: ChipGeometry,
-  finding: Finding,
+  named: ReadonlySet<string>,
   inView: readonly number[],
   holes: readonly MapHole[],
   view: Box,
-  scale: number,
+  frame: PaperFrame,
   options: PlaceOptions,
-): MapLabel[] {
-  const size = options.labelSizeMm;
-  const wish = (text: string, anchors: LabelWish['anchors']): LabelWish => ({
-    text,
-    widthMm: options.measure(text, size) + 0.5,
-    heightMm: 1.25 * size,
-    anchors,
-  });
-  const centre = { x: options.widthMm / 2, y: options.heightMm / 2 };
-  const wishes: LabelWish[] = [];
-  if (options.measured !== null) wishes.push(wish(options.measured, [{ ...centre, clear: 0.4 }]));
-  const named = new Set(finding.names);
+): LabelWish[] {
+  const { measured, widthMm, heightMm, readable } = options;
+  const wish = (text: string, anchors: LabelWish['anchors']): LabelWish =>
+    labelWish('reach', text, anchors, options);
+  const wishes = measured === null ? [] : [wish(measured, [{ x: widthMm / 2, y: heightMm / 2, clear: 0.4 }])];
   for (const [index, piece] of longestPieces(geometry, inView, view)) {
     const channel = geometry.chip.channels[index];
     if (!named.has(channel.name)) continue;
-    const clear = Math.max(stripHalfWidthMm(channel) * scale, 0.15) + 0.2;
-    const anchors = inViewPoints(geometry, piece, view, scale).map((point) => ({ ...point, clear }));
-    wishes.push(wish(shortName(channel.name, options.readable), anchors));
+    const clear = Math.max(stripHalfWidthMm(channel) * frame.scale, 0.15) + 0.2;
+    const anchors = inViewPoints(geometry, piece, view, frame).map((point) => ({ ...point, clear }));
+    wishes.push(wish(shortName(channel.name, readable), anchors));
   }
-  for (const hole of holes.slice(0, 6)) {
-    const anchor = {
-      x: clamp(hole.x, 0, options.widthMm),
-      y: clamp(hole.y, 0, options.heightMm),
-      clear: hole.radiusMm,
-    };
-    wishes.push(wish(shortName(hole.name, options.readable), [anchor]));
+  for (const { name, x, y, radiusMm } of holes.slice(0, 6)) {
+    const anchor = { x: clamp(x, 0, widthMm), y: clamp(y, 0, heightMm), clear: radiusMm };
+    wishes.push(wish(shortName(name, readable), [anchor]));
   }
-  const placed = placeLabels(wishes, {
-    area: { x: 0.4, y: 0.4, width: options.widthMm - 0.8, height: options.heightMm - 0.8 },
-    geometry,
-    toDrawing: (box) => ({
-      x: view.x + box.x / scale,
-      y: view.y + box.y / scale,
-      width: box.width / scale,
-      height: box.height / scale,
-    }),
-    scale,
-    leastHalfWidthMm: 0.3,
-    obstacles: holes.map(({ x, y, radiusMm }) => ({
-      x: x - radiusMm,
-      y: y - radiusMm,
-      width: 2 * radiusMm,
-      height: 2 * radiusMm,
-    })),
-    lines: markLine(finding, view, scale),
-  });
-  return placed.flatMap((label) =>
-    label === undefined
-      ? []
-      : [{ kind: 'reach', text: label.wish.text, box: label.box, sizeMm: size, leader: label.leader }],
-  );
+  return wishes;
 }
 
 /** Of each channel in view the piece that shows most of its length. */
@@ -253,27 +215,14 @@ function inViewPoints(
   { pieces }: ChipGeometry,
   piece: number,
   view: Box,
-  scale: number,
+  frame: PaperFrame,
 ): { x: number; y: number }[] {
   const [x1, y1, x2, y2] = pieces.subarray(4 * piece, 4 * piece + 4);
   const [from, to] = visibleShare(x1, y1, x2, y2, view);
   return [0.5, 0.25, 0.75].map((share) => {
     const t = from + (to - from) * share;
-    return { x: (x1 + (x2 - x1) * t - view.x) * scale, y: (y1 + (y2 - y1) * t - view.y) * scale };
+    return { x: frame.x(x1 + (x2 - x1) * t), y: frame.y(y1 + (y2 - y1) * t) };
   });
-}
-
-/** The distance marked, so that no label lies on it. */
-function markLine({ mark }: Finding, view: Box, scale: number): [number, number, number, number][] {
-  if (mark === undefined) return [];
-  return [
-    [
-      (mark.x1Mm - view.x) * scale,
-      (mark.y1Mm - view.y) * scale,
-      (mark.x2Mm - view.x) * scale,
-      (mark.y2Mm - view.y) * scale,
-    ],
-  ];
 }
 
 function clamp(value: number, low: number, high: number): number {

@@ -83,6 +83,11 @@ export function padText(text: string, width: number, side: 'left' | 'right'): st
   return side === 'left' ? space + text : text + space;
 }
 
+/** Width of texts in a terminal of so many columns. */
+export function textWidth(columns: number): number {
+  return Math.max(40, Math.min(100, columns));
+}
+
 /** Lines of at most `width` columns, broken at spaces; a longer word is cut into pieces. */
 export function wrapText(text: string, width: number): string[] {
   return wrapMeasured(text, width, displayWidth);

@@ -1,11 +1,11 @@
-import { sectionForm } from '../physics/section.ts';
-import { formatNumber, type Show, type Unit } from '../runsheet/shown.ts';
+import { flowForShear, type ShearAt } from '../physics/duct-state.ts';
+import type { Show, Unit } from '../runsheet/shown.ts';
 import type { PumpLimitEntry, Window } from '../runsheet/types.ts';
 import type { RunNetwork } from '../solve/flow-network.ts';
 import type { FoundTarget } from '../solve/targets.ts';
 import { lineAt, settingsFor } from '../solve/targets-limits.ts';
 import { targetValue } from '../solve/targets-wanted.ts';
-import { niceStep } from './colour-scale.ts';
+import { axisTicks } from './colour-scale.ts';
 
 /** A curve of setting against target as data, in the units shown: target along x, setting along y. */
 export interface PumpCurve {
@@ -107,13 +107,8 @@ function valueCeiling(
 }
 
 function axis(label: string, low: number, high: number, { si }: Unit): CurveAxis {
-  const from = low / si;
-  const to = high / si;
-  const step = niceStep((to - from) / 5);
-  const ticks: { at: number; text: string }[] = [];
-  for (let k = Math.ceil(from / step - 1e-9); k * step <= to + 1e-9 * step; k++)
-    ticks.push({ at: k * step, text: formatNumber(k * step) });
-  return { label, low: from, high: to, ticks };
+  const [from, to] = [low / si, high / si];
+  return { label, low: from, high: to, ticks: axisTicks(from, to) };
 }
 
 /** Pump limits as settings of the port. */
@@ -143,7 +138,7 @@ function windowsOf(
   { network, run }: RunNetwork,
   { wanted }: FoundTarget,
 ): { readonly window: Window; readonly text: string }[] {
-  const { entry, observed } = wanted;
+  const { entry, measure, observed } = wanted;
   const windows: { window: Window; text: string }[] = [];
   if (typeof entry.value !== 'number') windows.push({ window: entry.value, text: 'target' });
   if (observed.kind !== 'reach') return windows;
@@ -151,24 +146,19 @@ function windowsOf(
   const settings = run.channels[network.reachChannel[observed.reach]];
   if (settings === null) return windows;
   const text = `window of ${channel.name}`;
-  if (entry.quantity === 'wall_shear' && settings.wallShear !== null) {
+  if (measure.kind === 'shear' && settings.wallShear !== null) {
     // the least is asked of the mean, the most of the peak: both are shown as what the target would then read
-    const form = sectionForm(channel.profile, channel.ductWidthMm / 1000, channel.depthMm / 1000);
-    const own = entry.at === 'mean' ? form.floorMean : form.floorPeak;
+    const shown = (at: ShearAt, shearPa: number | null): number | null =>
+      shearPa === null
+        ? null
+        : targetValue(measure, flowForShear(measure.form, 'floor', at, shearPa, measure.fluid));
     const { min, max } = settings.wallShear;
-    windows.push({
-      window: {
-        min: min === null ? null : (min * own) / form.floorMean,
-        max: max === null ? null : (max * own) / form.floorPeak,
-      },
-      text,
-    });
+    windows.push({ window: { min: shown('mean', min), max: shown('peak', max) }, text });
   }
-  if (entry.quantity === 'residence_time' && settings.residenceTime !== null) {
+  if (measure.kind === 'time' && settings.residenceTime !== null) {
     // the least is asked of the fastest fluid
-    const form = sectionForm(channel.profile, channel.ductWidthMm / 1000, channel.depthMm / 1000);
     const { min, max } = settings.residenceTime;
-    windows.push({ window: { min: min === null ? null : min * form.peakOverMean, max }, text });
+    windows.push({ window: { min: min === null ? null : min * measure.form.peakOverMean, max }, text });
   }
   if (entry.quantity === 'flow' && settings.flow !== null) windows.push({ window: settings.flow, text });
   return windows;

@@ -1,6 +1,7 @@
 import type { Network } from '../network/types.ts';
 import type { FoundSettings, FoundTarget } from '../solve/targets.ts';
 import { lineAt } from '../solve/targets-limits.ts';
+import { known } from './known.ts';
 import type { PumpPart } from './result-rows.ts';
 
 /** The pump part of the JSON document. Numbers are exact: set as given, a check of the same layout reaches the targets. */
@@ -34,7 +35,7 @@ export function pumpPartOf({ chip }: Network, { targets }: FoundSettings): PumpP
   };
 }
 
-export const SI_UNITS = {
+const SI_UNITS = {
   flow: 'm³/s',
   wall_shear: 'Pa',
   velocity: 'm/s',
@@ -54,9 +55,4 @@ function rangePart({ range, response }: FoundTarget): Pick<PumpPart['settings'][
       flow_max_m3_s: at(response.flowM3s, range.high),
     },
   };
-}
-
-/** null for what does not exist (a time at rest), and no −0. */
-function known(value: number): number | null {
-  return Number.isFinite(value) ? value + 0 : null;
 }

@@ -1,10 +1,12 @@
+import { roomLengthM } from '../network/lengths.ts';
 import { reachName } from '../network/names.ts';
-import { formatNumber, formatShare, type Show, type Shown } from '../runsheet/shown.ts';
-import type { ChannelEntry, Window } from '../runsheet/types.ts';
-import type { RunNetwork } from '../solve/flow-network.ts';
+import { residenceTime, volumeOf } from '../physics/duct-state.ts';
+import { formatShare, type Show } from '../runsheet/shown.ts';
+import type { ChannelEntry } from '../runsheet/types.ts';
+import { reachState } from '../solve/reach-state.ts';
 import type { ReportedCase } from './report.ts';
 import type { ReachRow } from './result-rows.ts';
-import { sectionCache } from './section-values.ts';
+import { windowText } from './window-text.ts';
 
 /** What a map can be coloured by. */
 export type MapQuantity = 'shear' | 'pressure' | 'flow' | 'residence';
@@ -13,33 +15,24 @@ export type MapQuantity = 'shear' | 'pressure' | 'flow' | 'residence';
  * One value per reach (SI; NaN where there is none), without making rows: mean floor shear, magnitude of the flow,
  * residence time, or the mean of the two end pressures.
  */
-export function reachValues({ network, run, flow }: ReportedCase, quantity: MapQuantity): Float64Array {
-  const { chip } = network;
-  const sectionOf = sectionCache();
+export function reachValues(one: ReportedCase, quantity: MapQuantity): Float64Array {
+  const { network, flow } = one;
   const values = new Float64Array(network.reachCount);
-  for (let reach = 0; reach < network.reachCount; reach++) {
-    values[reach] = valueAlong(reach);
-  }
+  for (let reach = 0; reach < network.reachCount; reach++) values[reach] = valueAlong(reach);
   return values;
 
   function valueAlong(reach: number): number {
-    const flowM3s = Math.abs(flow.reachFlow[reach]);
     switch (quantity) {
       case 'pressure':
         return (flow.nodePressure[network.reachFrom[reach]] + flow.nodePressure[network.reachTo[reach]]) / 2;
       case 'flow':
-        return flowM3s;
-      case 'shear': {
-        const { profile, ductWidthMm, depthMm } = chip.channels[network.reachChannel[reach]];
-        return sectionOf(profile, ductWidthMm / 1000, depthMm / 1000).floorMeanPa(
-          flowM3s,
-          run.fluid.viscosityPaS,
-        );
-      }
+        return Math.abs(flow.reachFlow[reach]);
+      case 'shear':
+        return reachState(one, reach)?.floorMeanPa ?? Number.NaN;
       case 'residence': {
-        const { ductWidthMm, depthMm } = chip.channels[network.reachChannel[reach]];
-        const lengthMm = network.reachDuctMm[reach] - network.reachJointMm[reach];
-        const seconds = (ductWidthMm * depthMm * lengthMm * 1e-9) / flowM3s;
+        const state = reachState(one, reach);
+        if (state === null) return Number.NaN;
+        const seconds = residenceTime(volumeOf(state.form, roomLengthM(network, reach)), state.flowM3s);
         return Number.isFinite(seconds) ? seconds : Number.NaN;
       }
       default:
@@ -106,14 +99,7 @@ export function hasWindow(settings: ChannelEntry | null): boolean {
   );
 }
 
-/** What is asked of the channels that have a window, by their name. */
-export function windowedChannels({ network, run }: RunNetwork): ReadonlyMap<string, ChannelEntry> {
-  const windowed = new Map<string, ChannelEntry>();
-  run.channels.forEach((settings, c) => {
-    if (settings !== null && hasWindow(settings)) windowed.set(network.chip.channels[c].name, settings);
-  });
-  return windowed;
-}
+const STYLE = { digits: 4, most: '≤', least: '≥' } as const;
 
 /** The windows of a channel as text: "shear 0.05 to 0.5 Pa over 80 %". */
 export function windowTexts(settings: ChannelEntry | null, show: Show): readonly string[] {
@@ -123,17 +109,25 @@ export function windowTexts(settings: ChannelEntry | null, show: Show): readonly
   if (wallShear !== null) {
     const over = wallShear.over === null ? '' : ` over ${formatShare(wallShear.over)}`;
     texts.push(
-      `shear ${rangeText('wall_shear', wallShear, show)}${over}${walls === 'all' ? ', all walls' : ''}`,
+      `shear ${windowText(show, 'wall_shear', wallShear, STYLE)}${over}${walls === 'all' ? ', all walls' : ''}`,
     );
   }
-  if (residenceTime !== null) texts.push(`time ${rangeText('residence_time', residenceTime, show)}`);
-  if (flow !== null) texts.push(`flow ${rangeText('flow', flow, show)}`);
+  if (residenceTime !== null) texts.push(`time ${windowText(show, 'residence_time', residenceTime, STYLE)}`);
+  if (flow !== null) texts.push(`flow ${windowText(show, 'flow', flow, STYLE)}`);
   return texts;
 }
 
-function rangeText(shown: Shown, { min, max }: Window, show: Show): string {
-  if (min === null) return `≤ ${show.text(shown, max)}`;
-  if (max === null) return `≥ ${show.text(shown, min)}`;
-  const unit = show.unit(shown, Math.max(Math.abs(min), Math.abs(max)));
-  return `${formatNumber(min / unit.si)} to ${formatNumber(max / unit.si)} ${unit.text}`;
+/** What a table says of a reach's windows: "outside: shear 0.05 to 0.5 Pa"; nothing without a window. */
+export function windowCell(one: ReportedCase): (row: Pick<ReachRow, 'channel' | 'name'>) => string {
+  const { network, run, show } = one;
+  const windowed = new Map<string, ChannelEntry>();
+  run.channels.forEach((settings, c) => {
+    if (settings !== null && hasWindow(settings)) windowed.set(network.chip.channels[c].name, settings);
+  });
+  const outside = outsideWindows(one);
+  return (row) => {
+    const settings = windowed.get(row.channel);
+    if (settings === undefined) return '';
+    return `${outside(row.channel, row.name) ? 'outside: ' : ''}${windowTexts(settings, show).join('; ')}`;
+  };
 }

@@ -5,6 +5,7 @@ import { type Show, showOf } from '../runsheet/shown.ts';
 import type { FoundSettings } from '../solve/targets.ts';
 import type { FlowState } from '../solve/types.ts';
 import type { Spread } from '../spread/types.ts';
+import { cleanText } from './plain-text.ts';
 import { buildResult, type CaseInput, type CasePart, type ReportInput, type Result } from './result.ts';
 
 /** One case with everything that its pages, pictures and summary are drawn from. */
@@ -37,6 +38,11 @@ export interface Report {
 export function casesLeftOut({ cases, sheetCases }: Pick<Report, 'cases' | 'sheetCases'>): readonly string[] {
   const seen = new Set(cases.map(({ name }) => name));
   return sheetCases.filter((name) => !seen.has(name));
+}
+
+/** "Spread, case cold", or the title alone where there are no cases. */
+export function ofCase(title: string, { name }: Pick<ReportedCase, 'name'>): string {
+  return name === null ? title : `${title}, case ${cleanText(name)}`;
 }
 
 /** The report of a layout under its cases, in the order given. */

@@ -6,16 +6,17 @@ import { resultSchema } from './result-schema.ts';
  * Used when the package is built; not needed at run time.
  */
 export function resultJsonSchema(): object {
-  const schema = toJsonSchema(resultSchema, { target: 'draft-2020-12', errorMode: 'throw' });
+  const schema = toJsonSchema(resultSchema, {
+    target: 'draft-2020-12',
+    errorMode: 'throw',
+    // kinds and heads are for people's tables
+    ignoreActions: ['metadata'],
+  });
   return {
     $schema: 'https://json-schema.org/draft/2020-12/schema',
     title: 'rillcheck result',
     description:
       'Result of a chip check: SI units, the unit in each key; a number that does not exist is null.',
-    ...withoutSchemaKey(schema),
+    ...schema,
   };
-}
-
-function withoutSchemaKey(schema: object): object {
-  return Object.fromEntries(Object.entries(schema).filter(([key]) => key !== '$schema'));
 }

@@ -1,16 +1,34 @@
 import * as v from 'valibot';
 import { RESULT_VERSION } from '../version.ts';
+import type { Quantity } from './quantities.ts';
 
 /**
- * The one typed description of the result that leaves the program as JSON and CSV: the TypeScript types (`result-rows.ts`),
- * the JSON Schema and the CSV columns all come from here. Keys carry their unit; a number that does not exist is null.
+ * The one typed description of the result: the TypeScript types (`result-rows.ts`), the JSON Schema, the CSV columns, and heads and
+ * units of tables for people all come from here. Keys carry their unit; a number that does not exist is null.
  */
 
 const text = v.string();
+const sha256 = v.pipe(text, v.regex(/^[0-9a-f]{64}$/));
 const count = (description: string) =>
   v.pipe(v.number(), v.integer(), v.minValue(0), v.description(description));
 const number = (description: string) => v.pipe(v.number(), v.description(description));
 const maybe = (description: string) => v.pipe(v.nullable(v.number()), v.description(description));
+/** Numbers that people read too: each with what it measures, and its head in tables. */
+const size = (kind: Quantity['kind']) => (description: string, head: string) =>
+  v.pipe(v.number(), v.description(description), v.metadata({ kind, head }));
+const quantity = (kind: Quantity['kind']) => (description: string, head: string, second?: string) =>
+  v.pipe(v.nullable(v.number()), v.description(description), v.metadata({ kind, head, second }));
+const drawnMm = size('drawn_mm');
+const length = size('length');
+const flow = quantity('flow');
+const pressure = quantity('pressure');
+const shear = quantity('wall_shear');
+const time = quantity('residence_time');
+const across = quantity('cross_length');
+const velocity = quantity('velocity');
+const resistance = quantity('resistance')('Pressure drop per flow', 'resistance');
+const floorMean = shear('Wall shear on the floor, mean over its width', 'floor mean');
+const floorPeak = shear('Wall shear on the floor, in its middle', 'floor peak');
 
 export const toolSchema = v.strictObject({
   name: text,
@@ -20,16 +38,14 @@ export const toolSchema = v.strictObject({
 
 export const layoutSchema = v.strictObject({
   file: v.pipe(text, v.description('File name of the layout')),
-  sha256: v.pipe(text, v.regex(/^[0-9a-f]{64}$/)),
+  sha256,
   width_mm: maybe('Width of the drawing'),
   height_mm: maybe('Height of the drawing'),
   unit_mm: number('Millimetres per unit of the drawing'),
   ignored: v.pipe(v.record(text, count('How many')), v.description('What was drawn and not read, by kind')),
 });
 
-export const runSheetSchema = v.nullable(
-  v.strictObject({ file: text, sha256: v.pipe(text, v.regex(/^[0-9a-f]{64}$/)) }),
-);
+export const runSheetSchema = v.nullable(v.strictObject({ file: text, sha256 }));
 
 export const fluidSchema = v.strictObject({
   name: text,
@@ -38,7 +54,7 @@ export const fluidSchema = v.strictObject({
   density_kg_m3: number('Density'),
 });
 
-export const verdictSchema = v.pipe(
+const verdictSchema = v.pipe(
   v.picklist(['ready', 'hold']),
   v.description('ready: no blocker; hold: at least one. Read it with the counts'),
 );
@@ -58,15 +74,18 @@ export const countsSchema = v.strictObject({
 
 export const portSchema = v.strictObject({
   name: text,
-  x_mm: number('Centre, drawing coordinates in mm'),
-  y_mm: number('Centre, drawing coordinates in mm, y down'),
-  diameter_mm: number('Diameter of the hole'),
+  x_mm: drawnMm('Centre, drawing coordinates in mm', 'x in drawing'),
+  y_mm: drawnMm('Centre, drawing coordinates in mm, y down', 'y in drawing'),
+  diameter_mm: drawnMm('Diameter of the hole', 'diameter'),
   condition: v.picklist(['pressure', 'flow', 'head', 'open', 'sealed', 'unset']),
-  pressure_pa: maybe('Gauge pressure in the chip at the port'),
-  supply_pressure_pa: maybe('Gauge pressure at the far end of the tubing, or the port without tubing'),
-  flow_m3_s: maybe('Flow into the chip; negative leaves it'),
-  tubing_volume_m3: maybe('Volume of all tubing pieces; null without tubing'),
-  tubing_time_s: maybe('Tubing volume over flow; null without tubing or flow'),
+  pressure_pa: pressure('Gauge pressure in the chip at the port', 'in the chip'),
+  supply_pressure_pa: pressure(
+    'Gauge pressure at the far end of the tubing, or the port without tubing',
+    'at the supply',
+  ),
+  flow_m3_s: flow('Flow into the chip; negative leaves it', 'flow into chip'),
+  tubing_volume_m3: quantity('volume')('Volume of all tubing pieces; null without tubing', 'tubing holds'),
+  tubing_time_s: time('Tubing volume over flow; null without tubing or flow', 'time in tubing'),
   joint_flow_share: maybe('How far joints that were not resolved could move the flow, as a share of it'),
   joint_pressure_share: maybe('How far they could move the pressure in the chip, as a share of it'),
 });
@@ -85,45 +104,51 @@ export const reachSchema = v.strictObject({
   layer: v.pipe(v.nullable(text), v.description('null for a stroke in no layer')),
   from: v.pipe(text, v.description('Node at the start, in drawn direction')),
   to: v.pipe(text, v.description('Node at the end, in drawn direction')),
-  width_m: maybe('Width of the rectangular duct'),
-  depth_m: maybe('Depth of the rectangular duct'),
-  drawn_length_m: number('Centreline length between the nodes, wells left out'),
-  length_m: number('Duct length: what resists flow after the joining rules'),
-  joint_length_m: number('Signed length that resolved joints add, within length_m'),
-  resistance_pa_s_m3: maybe('Pressure drop per flow'),
-  flow_m3_s: maybe('Flow, positive from → to'),
-  pressure_drop_pa: maybe('Pressure at from minus pressure at to'),
-  mean_velocity_m_s: maybe('Flow over cross-section, magnitude'),
-  peak_velocity_m_s: maybe('Velocity on the axis, magnitude'),
-  reynolds: maybe('Reynolds number on the hydraulic diameter'),
+  width_m: across('Width of the rectangular duct', 'width'),
+  depth_m: across('Depth of the rectangular duct', 'depth'),
+  drawn_length_m: length('Centreline length between the nodes, wells left out', 'drawn'),
+  length_m: length('Duct length: what resists flow after the joining rules', 'duct'),
+  joint_length_m: length('Signed length that resolved joints add, within length_m', 'joints'),
+  resistance_pa_s_m3: resistance,
+  flow_m3_s: flow('Flow, positive from → to', 'flow'),
+  pressure_drop_pa: pressure('Pressure at from minus pressure at to', 'drop'),
+  mean_velocity_m_s: velocity('Flow over cross-section, magnitude', 'v mean'),
+  peak_velocity_m_s: velocity('Velocity on the axis, magnitude', 'v peak'),
+  reynolds: quantity('number')('Reynolds number on the hydraulic diameter', 'Re'),
   dean: maybe('Dean number at the tightest bend; null on a straight reach'),
   entrance_length_m: maybe('Length over which the velocity profile develops'),
-  wall_shear_floor_mean_pa: maybe('Wall shear on the floor, mean over its width'),
-  wall_shear_floor_peak_pa: maybe('Wall shear on the floor, in its middle'),
-  wall_shear_side_mean_pa: maybe('Wall shear on a side, mean over its height'),
-  wall_shear_side_peak_pa: maybe('Wall shear on a side, in its middle'),
-  floor_share_inside_window: maybe(
+  wall_shear_floor_mean_pa: floorMean,
+  wall_shear_floor_peak_pa: floorPeak,
+  wall_shear_side_mean_pa: shear('Wall shear on a side, mean over its height', 'side mean'),
+  wall_shear_side_peak_pa: shear('Wall shear on a side, in its middle', 'side peak'),
+  floor_share_inside_window: quantity('share')(
     'Share of the floor width whose shear lies in the wall_shear window; null without window',
+    'floor in',
+    'window',
   ),
-  residence_time_s: maybe('Volume over flow'),
-  fastest_time_s: maybe('Length over peak velocity'),
+  residence_time_s: time('Volume over flow', 'time mean'),
+  fastest_time_s: time('Length over peak velocity', 'fastest'),
   volume_m3: maybe('Width × depth × length'),
-  joint_flow_share: maybe('How far joints that were not resolved could move the flow, as a share of it'),
+  joint_flow_share: quantity('bound')(
+    'How far joints that were not resolved could move the flow, as a share of it',
+    'joints move',
+    'it by ±',
+  ),
 });
 
 export const segmentSchema = v.strictObject({
   name: text,
   reach: text,
-  x1_mm: number('Start, drawing coordinates in mm'),
-  y1_mm: number('Start, drawing coordinates in mm, y down'),
-  x2_mm: number('End, drawing coordinates in mm'),
-  y2_mm: number('End, drawing coordinates in mm, y down'),
-  length_m: number('Duct length'),
-  resistance_pa_s_m3: maybe('Pressure drop per flow'),
-  pressure_drop_pa: maybe('Pressure at the start minus pressure at the end'),
-  wall_shear_floor_mean_pa: maybe('Wall shear on the floor, mean over its width'),
-  wall_shear_floor_peak_pa: maybe('Wall shear on the floor, in its middle'),
-  residence_time_s: maybe('Volume over flow'),
+  x1_mm: drawnMm('Start, drawing coordinates in mm', 'x₁'),
+  y1_mm: drawnMm('Start, drawing coordinates in mm, y down', 'y₁'),
+  x2_mm: drawnMm('End, drawing coordinates in mm', 'x₂'),
+  y2_mm: drawnMm('End, drawing coordinates in mm, y down', 'y₂'),
+  length_m: length('Duct length', 'length'),
+  resistance_pa_s_m3: resistance,
+  pressure_drop_pa: pressure('Pressure at the start minus pressure at the end', 'drop'),
+  wall_shear_floor_mean_pa: floorMean,
+  wall_shear_floor_peak_pa: floorPeak,
+  residence_time_s: time('Volume over flow', 'time'),
 });
 
 export const findingSchema = v.strictObject({
@@ -157,6 +182,8 @@ export const balanceSchema = v.strictObject({
   worst_node: v.nullable(text),
 });
 
+const end = maybe('Open ends are null');
+
 export const pumpSchema = v.strictObject({
   targets: v.array(
     v.strictObject({
@@ -185,10 +212,10 @@ export const pumpSchema = v.strictObject({
       range: v.exactOptional(
         v.pipe(
           v.strictObject({
-            supply_pressure_min_pa: maybe('Open ends are null'),
-            supply_pressure_max_pa: maybe('Open ends are null'),
-            flow_min_m3_s: maybe('Open ends are null'),
-            flow_max_m3_s: maybe('Open ends are null'),
+            supply_pressure_min_pa: end,
+            supply_pressure_max_pa: end,
+            flow_min_m3_s: end,
+            flow_max_m3_s: end,
           }),
           v.description('For a window: what of this port alone keeps it'),
         ),
@@ -196,6 +223,14 @@ export const pumpSchema = v.strictObject({
     }),
   ),
 });
+
+/** Which number is spoken of. */
+const output = {
+  on: v.picklist(['port', 'reach', 'channel', 'node']),
+  name: text,
+  quantity: text,
+  unit: text,
+};
 
 export const spreadSchema = v.strictObject({
   draws: count('Draws in the sample'),
@@ -206,10 +241,7 @@ export const spreadSchema = v.strictObject({
   seed: v.pipe(v.number(), v.integer()),
   outputs: v.array(
     v.strictObject({
-      on: v.picklist(['port', 'reach', 'channel', 'node']),
-      name: text,
-      quantity: text,
-      unit: text,
+      ...output,
       nominal: maybe('Without any tolerance'),
       mean: maybe('Of the sample'),
       sd: maybe('Standard deviation of the sample'),
@@ -244,10 +276,7 @@ export const spreadSchema = v.strictObject({
   not_judged: v.array(text),
   worst_corner: v.nullable(
     v.strictObject({
-      on: v.picklist(['port', 'reach', 'channel', 'node']),
-      name: text,
-      quantity: text,
-      unit: text,
+      ...output,
       limit: number('The limit with least room, in standard deviations'),
       room_sd: number('Standard deviations between the nominal value and the limit; below 0 beyond it'),
       value: maybe('Of the number with every tolerance at its worst end'),
@@ -288,9 +317,25 @@ export const casesSchema = v.strictObject({
 export const resultSchema = v.union([singleSchema, casesSchema]);
 
 /** CSV columns, in the order of the JSON keys. */
-export const reachColumns = Object.keys(reachSchema.entries) as readonly (keyof v.InferOutput<
-  typeof reachSchema
->)[]; // the entries' own keys
-export const segmentColumns = Object.keys(segmentSchema.entries) as readonly (keyof v.InferOutput<
-  typeof segmentSchema
->)[]; // likewise
+export const reachColumns = keysOf(reachSchema.entries);
+export const segmentColumns = keysOf(segmentSchema.entries);
+export const outputColumns = keysOf(spreadSchema.entries.outputs.item.entries);
+
+function keysOf<Entries extends object>(entries: Entries): readonly (keyof Entries & string)[] {
+  return Object.keys(entries) as (keyof Entries & string)[]; // the entries' own keys
+}
+
+type ShownKey<Entries> = {
+  [Key in keyof Entries]: Entries[Key] extends {
+    readonly pipe: readonly [unknown, unknown, { readonly metadata: Quantity }];
+  }
+    ? Key
+    : never;
+}[keyof Entries];
+
+export const portQuantity = (key: ShownKey<typeof portSchema.entries>): Quantity =>
+  portSchema.entries[key].pipe[2].metadata;
+export const reachQuantity = (key: ShownKey<typeof reachSchema.entries>): Quantity =>
+  reachSchema.entries[key].pipe[2].metadata;
+export const segmentQuantity = (key: ShownKey<typeof segmentSchema.entries>): Quantity =>
+  segmentSchema.entries[key].pipe[2].metadata;

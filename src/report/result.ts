@@ -1,15 +1,20 @@
+import { channelForm } from '../chip/sections.ts';
 import type { Chip, Port, PortRun, Run } from '../chip/types.ts';
 import type { FindingReport } from '../findings/types.ts';
+import { roomLengthM } from '../network/lengths.ts';
 import { nodeName, reachName, segmentName } from '../network/names.ts';
 import { type Network, NODE_KINDS } from '../network/types.ts';
+import { deanNumber } from '../physics/dean.ts';
+import { fastestTime, residenceTime, shareInside, volumeOf } from '../physics/duct-state.ts';
 import { tubeVolume } from '../physics/tube.ts';
 import type { RunSheet } from '../runsheet/types.ts';
-import type { RunNetwork } from '../solve/flow-network.ts';
 import type { JointShares } from '../solve/joint-share.ts';
+import { reachState } from '../solve/reach-state.ts';
 import type { FoundSettings } from '../solve/targets.ts';
 import type { FlowState } from '../solve/types.ts';
 import type { Spread } from '../spread/types.ts';
 import { RESULT_VERSION } from '../version.ts';
+import { known } from './known.ts';
 import { pumpPartOf } from './pump-part.ts';
 import type {
   BalanceRow,
@@ -28,7 +33,6 @@ import type {
   ToolRow,
 } from './result-rows.ts';
 import { type Rows, rows } from './rows.ts';
-import { sectionCache } from './section-values.ts';
 import { spreadPartOf } from './spread-part.ts';
 
 /** What one case adds: everything but tool, layout and run sheet. Keys and their order are those of the JSON document. */
@@ -126,7 +130,6 @@ function headOf({ tool, layout, sheet }: ReportInput, chip: Chip): Head {
 
 function casePartOf(input: CaseInput): CasePart {
   const { chip, run, network, flow, findings } = input;
-  const sectionOf = sectionCache();
   return {
     fluid: {
       name: run.fluid.name,
@@ -149,10 +152,8 @@ function casePartOf(input: CaseInput): CasePart {
     },
     ports: chip.ports.map((port, i) => portRow(port, run.ports[i], i, flow, input.jointShares)),
     nodes: rows(network.nodeCount, (node) => nodeRow(network, flow, node)),
-    reaches: rows(network.reachCount, (reach) =>
-      reachRow({ network, run }, flow, reach, sectionOf, input.jointShares),
-    ),
-    segments: rows(network.segmentCount, (segment) => segmentRow({ network, run }, flow, segment, sectionOf)),
+    reaches: rows(network.reachCount, (reach) => reachRow(input, reach)),
+    segments: rows(network.segmentCount, (segment) => segmentRow(input, segment)),
     findings: findings.findings.map(findingRow),
     not_run: findings.notRun.map(({ rule, why }) => ({ rule, why })),
     balance: {
@@ -191,7 +192,7 @@ function portRow(
     supply_pressure_pa: known(flow.supplyPressure[index]),
     flow_m3_s: known(flowM3s),
     tubing_volume_m3: volumeM3,
-    tubing_time_s: volumeM3 === null ? null : known(volumeM3 / Math.abs(flowM3s)),
+    tubing_time_s: volumeM3 === null ? null : known(residenceTime(volumeM3, flowM3s)),
     joint_flow_share: jointShares === undefined ? null : known(jointShares.portFlow[index]),
     joint_pressure_share: jointShares === undefined ? null : known(jointShares.portPressure[index]),
   };
@@ -207,27 +208,15 @@ function nodeRow(network: Network, flow: FlowState, node: number): NodeRow {
   };
 }
 
-type SectionOf = ReturnType<typeof sectionCache>;
-
-function reachRow(
-  { network, run }: RunNetwork,
-  flow: FlowState,
-  reach: number,
-  sectionOf: SectionOf,
-  jointShares: JointShares | undefined,
-): ReachRow {
+function reachRow(input: CaseInput, reach: number): ReachRow {
+  const { network, run, flow, jointShares } = input;
   const { chip } = network;
   const channel = chip.channels[network.reachChannel[reach]];
-  const section = sectionOf(channel.profile, channel.ductWidthMm / 1000, channel.depthMm / 1000);
-  const lengthM = network.reachDuctMm[reach] / 1000;
-  const jointM = network.reachJointMm[reach] / 1000;
-  const flowM3s = flow.reachFlow[reach];
-  const state = section.at(flowM3s, run.fluid);
+  const form = channelForm(chip, network.reachChannel[reach]);
+  const state = reachState(input, reach);
   const bendM = tightestBendM(network, reach);
   const window = run.channels[network.reachChannel[reach]]?.wallShear ?? null;
-  // what a joint adds is resistance, not room: volume and times use the length without it
-  const roomM = lengthM - jointM;
-  const volumeM3 = section.areaM2 * roomM;
+  const roomM = roomLengthM(network, reach);
   return {
     name: reachName(network, reach),
     channel: channel.name,
@@ -237,32 +226,26 @@ function reachRow(
     width_m: known(channel.ductWidthMm / 1000),
     depth_m: known(channel.depthMm / 1000),
     drawn_length_m: network.reachDrawnMm[reach] / 1000,
-    length_m: lengthM,
-    joint_length_m: jointM,
+    length_m: network.reachDuctMm[reach] / 1000,
+    joint_length_m: network.reachJointMm[reach] / 1000,
     resistance_pa_s_m3: known(flow.reachResistance[reach]),
-    flow_m3_s: known(flowM3s),
+    flow_m3_s: known(flow.reachFlow[reach]),
     pressure_drop_pa: known(flow.reachPressureDrop[reach]),
-    mean_velocity_m_s: known(state.meanVelocity),
-    peak_velocity_m_s: known(state.peakVelocity),
-    reynolds: known(state.reynolds),
-    dean: bendM === 0 ? null : known(section.dean(state.reynolds, bendM)),
-    entrance_length_m: known(state.entranceLengthM),
-    wall_shear_floor_mean_pa: known(state.floorMeanPa),
-    wall_shear_floor_peak_pa: known(state.floorPeakPa),
-    wall_shear_side_mean_pa: known(state.sideMeanPa),
-    wall_shear_side_peak_pa: known(state.sidePeakPa),
+    mean_velocity_m_s: known(state?.meanVelocity),
+    peak_velocity_m_s: known(state?.peakVelocity),
+    reynolds: known(state?.reynolds),
+    dean:
+      bendM === 0 ? null : known(state && deanNumber(state.reynolds, state.form.hydraulicDiameterM, bendM)),
+    entrance_length_m: known(state?.entranceM),
+    wall_shear_floor_mean_pa: known(state?.floorMeanPa),
+    wall_shear_floor_peak_pa: known(state?.floorPeakPa),
+    wall_shear_side_mean_pa: known(state?.sideMeanPa),
+    wall_shear_side_peak_pa: known(state?.sidePeakPa),
     floor_share_inside_window:
-      window === null
-        ? null
-        : known(
-            section.floorShareInside(flowM3s, run.fluid.viscosityPaS, {
-              minPa: window.min,
-              maxPa: window.max,
-            }),
-          ),
-    residence_time_s: known(volumeM3 / Math.abs(flowM3s)),
-    fastest_time_s: known(roomM / state.peakVelocity),
-    volume_m3: known(volumeM3),
+      window && known(state && shareInside(state, 'floor', { minPa: window.min, maxPa: window.max })),
+    residence_time_s: known(form && residenceTime(volumeOf(form, roomM), flow.reachFlow[reach])),
+    fastest_time_s: known(state && fastestTime(state, roomM)),
+    volume_m3: known(form && volumeOf(form, roomM)),
     joint_flow_share: jointShares === undefined ? null : known(jointShares.reachFlow[reach]),
   };
 }
@@ -277,18 +260,11 @@ function tightestBendM(network: Network, reach: number): number {
   return radiusMm === Number.POSITIVE_INFINITY ? 0 : radiusMm / 1000;
 }
 
-function segmentRow(
-  { network, run }: RunNetwork,
-  flow: FlowState,
-  segment: number,
-  sectionOf: SectionOf,
-): SegmentRow {
-  const { chip } = network;
+function segmentRow(input: CaseInput, segment: number): SegmentRow {
+  const { network, flow } = input;
   const reach = network.segmentReach[segment];
-  const channel = chip.channels[network.reachChannel[reach]];
-  const section = sectionOf(channel.profile, channel.ductWidthMm / 1000, channel.depthMm / 1000);
+  const state = reachState(input, reach);
   const ductMm = network.segmentDuctMm[segment];
-  const flowM3s = flow.reachFlow[reach];
   const resistance = flow.reachResistance[reach] * (ductMm / network.reachDuctMm[reach]);
   return {
     name: segmentName(network, segment),
@@ -299,10 +275,10 @@ function segmentRow(
     y2_mm: network.segmentY2[segment],
     length_m: ductMm / 1000,
     resistance_pa_s_m3: known(resistance),
-    pressure_drop_pa: known(resistance * flowM3s),
-    wall_shear_floor_mean_pa: known(section.floorMeanPa(flowM3s, run.fluid.viscosityPaS)),
-    wall_shear_floor_peak_pa: known(section.floorPeakPa(flowM3s, run.fluid.viscosityPaS)),
-    residence_time_s: known((section.areaM2 * ductMm) / 1000 / Math.abs(flowM3s)),
+    pressure_drop_pa: known(resistance * flow.reachFlow[reach]),
+    wall_shear_floor_mean_pa: known(state?.floorMeanPa),
+    wall_shear_floor_peak_pa: known(state?.floorPeakPa),
+    residence_time_s: known(state && residenceTime(volumeOf(state.form, ductMm) / 1000, state.flowM3s)),
   };
 }
 
@@ -324,12 +300,6 @@ function findingRow(finding: FindingReport['findings'][number]): FindingRow {
         ? null
         : { because: accepted.because, by: accepted.by, on: accepted.on, up_to: accepted.upTo },
   };
-}
-
-/** null for what does not exist (NaN, or a division by no flow), and no −0. */
-function known(value: number): number | null {
-  if (!Number.isFinite(value)) return null;
-  return value === 0 ? 0 : value;
 }
 
 /** Reports name files only, so that they are the same wherever the program was started. */

@@ -1,7 +1,8 @@
 import { DEFAULT_MAX_REYNOLDS } from '../chip/defaults.ts';
 import { formatNumber, formatShare, showOf } from '../runsheet/shown.ts';
 import type { SectionInput, SectionState } from '../section/section.ts';
-import { wrapText } from './plain-text.ts';
+import { figures, words } from './columns.ts';
+import { textWidth, wrapText } from './plain-text.ts';
 import { textTable } from './text-table.ts';
 
 export interface SectionFluid {
@@ -17,7 +18,7 @@ export function sectionText(
   fluid: SectionFluid,
   columns: number,
 ): string {
-  const width = Math.max(40, Math.min(100, columns));
+  const width = textWidth(columns);
   const show = showOf(null);
   const size = (metres: number): string => show.text('cross_length', metres);
   const isGiven = (kind: SectionInput['given']['kind']): string => (input.given.kind === kind ? 'given' : '');
@@ -48,12 +49,8 @@ export function sectionText(
     `${fluid.name}${at}: viscosity ${formatNumber(input.viscosityPaS * 1e3)} mPa s, density ${formatNumber(input.densityKgM3)} kg/m³`,
     '',
     ...textTable(
-      [
-        { head: '', align: 'left' },
-        { head: '', align: 'right' },
-        { head: '', align: 'left' },
-      ],
       rows,
+      [words('', ([what]) => what), figures('', ([, value]) => value), words('', ([, , given]) => given)],
       width,
     ).slice(1),
     '',

@@ -1,6 +1,6 @@
 import { formatNumber, type Show } from '../runsheet/shown.ts';
 import type { Spread, SpreadOutput } from '../spread/types.ts';
-import { niceStep } from './colour-scale.ts';
+import { axisTicks } from './colour-scale.ts';
 import { keptShareText, outputText, outputUnit, quantityText } from './spread-rows.ts';
 
 /** A distribution as a picture in data: numbers in the shown unit along the axis, heights as shares of the tallest bar or curve. */
@@ -52,7 +52,7 @@ export function distributionChart(
     unit: unit.text,
     low: low / unit.si,
     high: high / unit.si,
-    ticks: ticksOf(low / unit.si, high / unit.si),
+    ticks: axisTicks(low / unit.si, high / unit.si),
     bars: bars.map((count) => count / tallest),
     curve: curve.map((height) => height / tallest),
     nominal: output.nominal / unit.si,
@@ -91,12 +91,4 @@ function normalCurve(
     const z = (low + ((high - low) * i) / CURVE_STEPS - nominal) / linearSd;
     return peak * Math.exp((-z * z) / 2);
   });
-}
-
-function ticksOf(low: number, high: number): { at: number; text: string }[] {
-  const step = niceStep((high - low) / 5);
-  const ticks: { at: number; text: string }[] = [];
-  for (let k = Math.ceil(low / step); k * step <= high; k++)
-    ticks.push({ at: k * step, text: formatNumber(k * step) });
-  return ticks;
 }

@@ -1,4 +1,5 @@
 import type { Spread } from '../spread/types.ts';
+import { known } from './known.ts';
 import type { SpreadPart } from './result-rows.ts';
 
 /** The spread as it stands in the result document. */
@@ -10,10 +11,7 @@ export function spreadPartOf(spread: Spread): SpreadPart {
     draws_outside_model: spread.outside,
     seed: spread.seed,
     outputs: outputs.map((output) => ({
-      on: output.on,
-      name: output.name,
-      quantity: output.quantity,
-      unit: output.unit,
+      ...spokenOf(output),
       nominal: known(output.nominal),
       mean: known(output.mean),
       sd: known(output.sd),
@@ -39,10 +37,7 @@ export function spreadPartOf(spread: Spread): SpreadPart {
       corner === null
         ? null
         : {
-            on: outputs[corner.output].on,
-            name: outputs[corner.output].name,
-            quantity: outputs[corner.output].quantity,
-            unit: outputs[corner.output].unit,
+            ...spokenOf(outputs[corner.output]),
             limit: corner.limit,
             room_sd: corner.room,
             value: known(corner.value),
@@ -50,6 +45,10 @@ export function spreadPartOf(spread: Spread): SpreadPart {
             at: Object.fromEntries(causes.map(({ key }, cause) => [key, END[corner.signs[cause] + 1]])),
           },
   };
+}
+
+function spokenOf({ on, name, quantity, unit }: Spread['outputs'][number]) {
+  return { on, name, quantity, unit };
 }
 
 const END = ['lower', 'each its own', 'upper'] as const;
@@ -66,10 +65,4 @@ export function keptShare(
 function namedShares(shares: Float64Array | null, { causes }: Spread): Record<string, number> {
   if (shares === null) return {};
   return Object.fromEntries(causes.map(({ key }, cause) => [key, shares[cause]]));
-}
-
-/** null for what does not exist, and no −0. */
-function known(value: number): number | null {
-  if (!Number.isFinite(value)) return null;
-  return value === 0 ? 0 : value;
 }

@@ -1,8 +1,10 @@
+import { listText } from '../findings/words.ts';
 import { formatNumber, formatShare, type Show, type Shown, type Unit } from '../runsheet/shown.ts';
 import type { Tolerance } from '../runsheet/types.ts';
 import { isKept, type OutputQuantity } from '../spread/outputs.ts';
 import type { Spread, SpreadOutput } from '../spread/types.ts';
 import type { Cause } from '../spread/variables.ts';
+import { type Column, figures, words } from './columns.ts';
 import { keptShare } from './spread-part.ts';
 
 const QUANTITIES: Readonly<Record<OutputQuantity, { readonly text: string; readonly shown: Shown | null }>> =
@@ -37,54 +39,45 @@ export function outputUnit({ quantity, nominal, mean }: SpreadOutput, show: Show
   return show.unit(shown, Math.abs(Number.isNaN(nominal) ? mean : nominal) || 0);
 }
 
-/** Numbers of one output as they stand in tables; "–" for what does not exist. */
-export interface SpreadCells {
-  readonly what: string;
-  readonly quantity: string;
-  readonly unit: string;
-  readonly nominal: string;
-  readonly mean: string;
-  readonly sd: string;
-  readonly linearSd: string;
-  readonly low: string;
-  readonly high: string;
-  readonly asked: string;
-  readonly kept: string;
-  /** "83 % depth:lanes, 12 % width" */
-  readonly causes: string;
-  /** "no" where sample and first order differ, else nothing. */
-  readonly notLinear: string;
+/** What tables say of an output, a column each; "–" for what does not exist. */
+export function spreadColumns(spread: Spread, show: Show) {
+  const number = (
+    head: string,
+    pick: (output: SpreadOutput) => number,
+    digits?: number,
+    second?: string,
+  ): Column<SpreadOutput> =>
+    figures(head, (output) => numberText(pick(output), outputUnit(output, show), digits), second);
+  return {
+    what: words<SpreadOutput>(
+      'what',
+      ({ name, isTarget }) => (isTarget ? `${name} (target)` : name),
+      'share',
+    ),
+    quantity: words<SpreadOutput>('quantity', quantityText),
+    unit: words<SpreadOutput>('unit', (output) => outputUnit(output, show).text),
+    nominal: number('nominal', ({ nominal }) => nominal),
+    mean: number('mean', ({ mean }) => mean),
+    low: number('2.5 %', ({ p2_5 }) => p2_5),
+    high: number('97.5 %', ({ p97_5 }) => p97_5),
+    sd: number('sd', ({ sd }) => sd, 3),
+    linearSd: number('sd,', ({ linearSd }) => linearSd, 3, 'first order'),
+    linear: words<SpreadOutput>('linear', ({ isLinear }) => (isLinear === false ? 'no' : '')),
+    asked: words<SpreadOutput>('asked', (output) => askedText(output, outputUnit(output, show))),
+    kept: figures<SpreadOutput>('kept', (output) => shareText(keptShare(output, spread))),
+    /** "83 % depth:lanes, 12 % width" */
+    causes: words<SpreadOutput>('main causes', ({ shares }) => causesText(shares, spread.causes, 2), 'share'),
+  };
 }
 
-export function spreadCells(output: SpreadOutput, spread: Spread, show: Show): SpreadCells {
-  const unit = outputUnit(output, show);
-  const number = (value: number, digits = 4): string =>
-    Number.isFinite(value) ? formatNumber(value / unit.si, digits) : '–';
-  const { min, max } = output;
-  const asked =
-    min !== null && max !== null
-      ? `${number(min)} to ${number(max)}`
-      : max !== null
-        ? `≤ ${number(max)}`
-        : min !== null
-          ? `≥ ${number(min)}`
-          : '';
-  const kept = keptShare(output, spread);
-  return {
-    what: output.isTarget ? `${output.name} (target)` : output.name,
-    quantity: quantityText(output),
-    unit: unit.text,
-    nominal: number(output.nominal),
-    mean: number(output.mean),
-    sd: number(output.sd, 3),
-    linearSd: number(output.linearSd, 3),
-    low: number(output.p2_5),
-    high: number(output.p97_5),
-    asked,
-    kept: kept === null ? '' : shareText(kept),
-    causes: causesText(output.shares, spread.causes, 2),
-    notLinear: output.isLinear === false ? 'no' : '',
-  };
+function numberText(value: number, { si }: Unit, digits = 4): string {
+  return Number.isFinite(value) ? formatNumber(value / si, digits) : '–';
+}
+
+function askedText({ min, max }: SpreadOutput, unit: Unit): string {
+  if (min !== null && max !== null) return `${numberText(min, unit)} to ${numberText(max, unit)}`;
+  if (max !== null) return `≤ ${numberText(max, unit)}`;
+  return min === null ? '' : `≥ ${numberText(min, unit)}`;
 }
 
 /** "kept in 97.2 % of the draws", or nothing where nothing is asked. */
@@ -93,15 +86,16 @@ export function keptShareText(output: SpreadOutput, spread: Spread): string {
   return kept === null ? '' : `kept in ${shareText(kept)}`;
 }
 
-/** A share that is not all is never rounded to all. */
-export function shareText(share: number): string {
+/** A share that is not all is never rounded to all; nothing for none. */
+export function shareText(share: number | null): string {
+  if (share === null) return '';
   if (share < 1 && share > 0.9999) return '> 99.99 %';
   if (share > 0 && share < 0.0001) return '< 0.01 %';
   return formatShare(Math.round(share * 1e4) / 1e4);
 }
 
 /** The largest causes, those of 1 % and more. */
-export function causesText(shares: Float64Array | null, causes: readonly Cause[], most: number): string {
+function causesText(shares: Float64Array | null, causes: readonly Cause[], most: number): string {
   if (shares === null) return '';
   return rankedCauses(shares, causes)
     .filter(({ share }) => share >= 0.01)
@@ -165,7 +159,7 @@ function sizeText(key: string, { kind, value }: Tolerance, show: Show): string {
 /** "all windows and limits hold in 97.2 % of the draws (95 % interval 96.8 % to 97.5 %)" */
 export function yieldText({ yield: chance, unknownWindows, draws }: Spread): string {
   if (unknownWindows.length > 0)
-    return `nobody can say in how many draws all windows hold: the ${listOf(unknownWindows)} can not be known`;
+    return `nobody can say in how many draws all windows hold: the ${listText(unknownWindows, LISTED)} can not be known`;
   if (chance === null) return draws === 0 ? 'no draw was made, so nothing is said of the yield' : '';
   return `all windows and limits hold in ${shareText(chance.share)} of the draws (95 % interval ${shareText(chance.low)} to ${shareText(chance.high)})`;
 }
@@ -192,18 +186,20 @@ export function remarks(spread: Spread): readonly string[] {
   if (turbulent > 0) texts.push(`in ${turbulent} of the draws some reach was not laminar`);
   const bent = outputs.filter(({ isLinear }) => isLinear === false);
   if (bent.length > 0) {
-    texts.push(`the response is not linear there, go by the sample: ${listOf(bent.map(outputText))}`);
+    texts.push(
+      `the response is not linear there, go by the sample: ${listText(bent.map(outputText), LISTED)}`,
+    );
   }
   const missed = outputs.filter(
     (output) => output.isTarget && output.hasWindow && !isKept(output, output.nominal),
   );
   if (missed.length > 0) {
     texts.push(
-      `at the settings of the run sheet the target is missed by the ${listOf(missed.map(outputText))}; the command pump finds settings that meet it`,
+      `at the settings of the run sheet the target is missed by the ${listText(missed.map(outputText), LISTED)}; the command pump finds settings that meet it`,
     );
   }
   for (const text of idle) texts.push(`moves nothing: ${text}`);
-  if (unknownLimits.length > 0) texts.push(`not judged: ${listOf(unknownLimits)}`);
+  if (unknownLimits.length > 0) texts.push(`not judged: ${listText(unknownLimits, LISTED)}`);
   if (leftOut > 0)
     texts.push(
       `${leftOut} more numbers are not listed for want of room; their windows were judged all the same`,
@@ -226,11 +222,7 @@ export function cornerText({ corner, outputs, causes }: Spread, show: Show): str
 
 const CORNER_END = ['lower', 'each at its worse end', 'upper'] as const;
 
-export function listOf(names: readonly string[], most = 4): string {
-  if (names.length <= 1) return names[0] ?? '';
-  if (names.length > most) return `${names.slice(0, most).join(', ')} and ${names.length - most} more`;
-  return `${names.slice(0, -1).join(', ')} and ${names[names.length - 1]}`;
-}
+const LISTED = 4;
 
 /** Whether anything moves a number. */
 export function moves({ sd, linearSd }: SpreadOutput): boolean {

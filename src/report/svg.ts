@@ -1,19 +1,15 @@
 import { reachName } from '../network/names.ts';
-import {
-  drawMap,
-  type MapDrawing,
-  type MapLabel,
-  type MapStroke,
-  mapNotes,
-  PALE_FILL,
-  PALE_LINE,
-  QUANTITY_TITLES,
-} from './map.ts';
+import { known } from './known.ts';
+import { drawMap, mapNotes } from './map.ts';
 import { chipGeometry } from './map-geometry.ts';
+import { MAP_QUANTITIES } from './map-quantities.ts';
+import { type MapDrawing, type MapLabel, type MapStroke, PALE_FILL, PALE_LINE } from './map-types.ts';
 import { cleanText, displayWidth } from './plain-text.ts';
 import { AT_FOUND_SETTINGS } from './pump-rows.ts';
+import { quantityTexts } from './quantities.ts';
 import type { MapQuantity } from './reach-values.ts';
-import type { ReportedCase } from './report.ts';
+import { ofCase, type ReportedCase } from './report.ts';
+import { portQuantity, reachQuantity } from './result-schema.ts';
 import { verdictLine } from './verdict-line.ts';
 
 export interface SvgOptions {
@@ -44,9 +40,8 @@ export function svgPicture(one: ReportedCase, options: SvgOptions): string {
   });
   const file = cleanText(one.network.chip.file);
   const title = [
-    file,
-    one.name === null ? '' : `, case ${cleanText(one.name)}`,
-    `: ${QUANTITY_TITLES[options.quantity]}`,
+    ofCase(file, one),
+    `: ${MAP_QUANTITIES[options.quantity].title}`,
     one.pump === undefined ? '' : `, ${AT_FOUND_SETTINGS}`,
   ].join('');
   const foundText = one.pump === undefined ? '' : ` Computed ${AT_FOUND_SETTINGS}.`;
@@ -57,11 +52,14 @@ export function svgPicture(one: ReportedCase, options: SvgOptions): string {
     `<title>${escapeXml(title)}</title>\n`,
     `<desc>${escapeXml(`${verdictLine(one.part.verdict, one.part.counts)}. ${mapNotes(drawing)}`)}</desc>\n`,
     `<rect width="${mm(drawing.widthMm)}" height="${mm(height)}" fill="#ffffff"/>\n`,
-    ...unreadLines(drawing),
+    ...outline(drawing.unread.under, `fill="none" stroke="${PALE_LINE}" stroke-width="0.2"`),
     ...edge(drawing),
     ...ground(drawing),
     ...reaches(drawing, one),
-    ...obstacles(drawing),
+    ...outline(
+      drawing.unread.over,
+      `fill="${PALE_FILL}" fill-rule="evenodd" stroke="${PALE_LINE}" stroke-width="0.15"`,
+    ),
     ...holes(drawing, one),
     ...labels(drawing, one),
     ...foot(drawing),
@@ -71,77 +69,59 @@ export function svgPicture(one: ReportedCase, options: SvgOptions): string {
 }
 
 function edge({ edge: rings }: MapDrawing): string[] {
-  return rings.map(
-    (ring) => `<path d="${pathData(ring)}" fill="none" stroke="#606060" stroke-width="0.25"/>\n`,
-  );
+  return rings.flatMap((ring) => outline([ring], 'fill="none" stroke="#606060" stroke-width="0.25"'));
 }
 
-function unreadLines({ unread }: MapDrawing): string[] {
-  if (unread.under.length === 0) return [];
-  const data = unread.under.map(pathData).join('');
-  return [`<path d="${data}" fill="none" stroke="${PALE_LINE}" stroke-width="0.2"/>\n`];
-}
-
-function obstacles({ unread }: MapDrawing): string[] {
-  if (unread.over.length === 0) return [];
-  const data = unread.over.map(pathData).join('');
-  return [
-    `<path d="${data}" fill="${PALE_FILL}" fill-rule="evenodd" stroke="${PALE_LINE}" stroke-width="0.15"/>\n`,
-  ];
+/** Lines or rings as one path; nothing for none. */
+function outline(lines: readonly (readonly number[])[], look: string): string[] {
+  return lines.length === 0 ? [] : [`<path d="${lines.map(pathData).join('')}" ${look}/>\n`];
 }
 
 function ground({ ground: strokes }: MapDrawing): string[] {
-  return [
-    '<g fill="none" stroke-linejoin="round">\n',
-    ...strokes.map((stroke) => `${strokePath(stroke)}\n`),
-    '</g>\n',
-  ];
+  return strokeGroup(strokes.map((stroke) => `${strokePath(stroke)}\n`));
+}
+
+function strokeGroup(paths: readonly string[]): string[] {
+  return ['<g fill="none" stroke-linejoin="round">\n', ...paths, '</g>\n'];
 }
 
 function reaches(drawing: MapDrawing, one: ReportedCase): string[] {
   const title = drawing.reaches.length > LONG_TITLES ? shortTitle : reachTitle;
-  return [
-    '<g fill="none" stroke-linejoin="round">\n',
-    ...drawing.reaches.map(({ reach, strokes }) => {
-      const hover = `<title>${escapeXml(title(one, reach))}</title>`;
-      return strokes.length === 1
-        ? `${strokePath(strokes[0], hover)}\n`
-        : `<g>${hover}${strokes.map((stroke) => strokePath(stroke)).join('')}</g>\n`;
-    }),
-    '</g>\n',
-  ];
+  const paths = drawing.reaches.map(({ reach, strokes }) => {
+    const hover = `<title>${escapeXml(title(one, reach))}</title>`;
+    return strokes.length === 1
+      ? `${strokePath(strokes[0], hover)}\n`
+      : `<g>${hover}${strokes.map((stroke) => strokePath(stroke)).join('')}</g>\n`;
+  });
+  return strokeGroup(paths);
 }
 
 /** Above this many reaches their titles hold what fits a line, to keep the picture openable. */
 const LONG_TITLES = 10_000;
 
 function shortTitle({ network, flow, show }: ReportedCase, reach: number): string {
-  const flowM3s = flow.reachFlow[reach];
-  const dropPa = flow.reachPressureDrop[reach];
-  return `${cleanText(reachName(network, reach))}: ${show.text('flow', known(flowM3s))}, ${show.text('pressure', known(dropPa))}`;
-}
-
-function known(value: number): number | null {
-  return Number.isNaN(value) ? null : value;
+  const [flowM3s, dropPa] = [known(flow.reachFlow[reach]), known(flow.reachPressureDrop[reach])];
+  return `${cleanText(reachName(network, reach))}: ${show.text('flow', flowM3s)}, ${show.text('pressure', dropPa)}`;
 }
 
 /** What hovering over a reach shows: its numbers, a line each. */
 function reachTitle({ part, show }: ReportedCase, reach: number): string {
   const row = part.reaches.at(reach);
+  const text = quantityTexts(reachQuantity, row, show);
   return [
     `${cleanText(row.name)} (${cleanText(row.from)} → ${cleanText(row.to)})`,
-    `flow ${show.text('flow', row.flow_m3_s)}`,
-    `pressure drop ${show.text('pressure', row.pressure_drop_pa)}`,
-    `floor shear ${show.text('wall_shear', row.wall_shear_floor_mean_pa)} mean, ${show.text('wall_shear', row.wall_shear_floor_peak_pa)} peak`,
-    `residence ${show.text('residence_time', row.residence_time_s)} mean, ${show.text('residence_time', row.fastest_time_s)} fastest`,
-    `${show.text('cross_length', row.width_m)} wide, ${show.text('cross_length', row.depth_m)} deep, ${show.text('length', row.length_m)} long`,
+    `flow ${text('flow_m3_s')}`,
+    `pressure drop ${text('pressure_drop_pa')}`,
+    `floor shear ${text('wall_shear_floor_mean_pa')} mean, ${text('wall_shear_floor_peak_pa')} peak`,
+    `residence ${text('residence_time_s')} mean, ${text('fastest_time_s')} fastest`,
+    `${text('width_m')} wide, ${text('depth_m')} deep, ${text('length_m')} long`,
   ].join('\n');
 }
 
 function holes({ holes: wells }: MapDrawing, { part, show }: ReportedCase): string[] {
   return wells.map(({ name, x, y, radiusMm }, i) => {
-    const { pressure_pa, flow_m3_s, condition } = part.ports[i];
-    const title = `${cleanText(name)} (${condition})\npressure ${show.text('pressure', pressure_pa)}\nflow into the chip ${show.text('flow', flow_m3_s)}`;
+    const text = quantityTexts(portQuantity, part.ports[i], show);
+    const title = `${cleanText(name)} (${part.ports[i].condition})\npressure ${text('pressure_pa')}\nflow into the chip ${text('flow_m3_s')}`;
     return `<circle cx="${mm(x)}" cy="${mm(y)}" r="${mm(radiusMm)}" fill="#ffffff" stroke="#202020" stroke-width="0.3"><title>${escapeXml(title)}</title></circle>\n`;
   });
 }

@@ -1,9 +1,14 @@
 import picocolors from 'picocolors';
+import { countText } from '../findings/words.ts';
 import { formatMm } from '../runsheet/shown.ts';
-import { cleanText, clipText, displayWidth, padText, wrapText } from './plain-text.ts';
-import { outsideWindows, reachesThatMatter, windowedChannels, windowTexts } from './reach-values.ts';
-import type { Report, ReportedCase } from './report.ts';
+import { figures, words } from './columns.ts';
+import { cleanText, clipText, displayWidth, padText, textWidth, wrapText } from './plain-text.ts';
+import { valueColumns } from './quantities.ts';
+import { reachesThatMatter, windowCell } from './reach-values.ts';
+import { ofCase, type Report, type ReportedCase } from './report.ts';
 import type { FindingRow } from './result-rows.ts';
+import { portQuantity, reachQuantity } from './result-schema.ts';
+import { textTable } from './text-table.ts';
 import { casesLine, verdictCounts } from './verdict-line.ts';
 
 export interface TerminalOptions {
@@ -20,13 +25,9 @@ export interface TerminalOptions {
  */
 export function terminalSummary(report: Report, options: TerminalOptions): string {
   const paint = picocolors.createColors(options.colour);
-  const width = Math.max(40, Math.min(100, options.columns));
+  const width = textWidth(options.columns);
   const lines = report.cases.flatMap((one) => {
-    const title = [
-      cleanText(report.result.layout.file),
-      one.name === null ? '' : `, case ${cleanText(one.name)}`,
-    ].join('');
-    const verdict = verdictLines(one, title, width, paint);
+    const verdict = verdictLines(one, ofCase(cleanText(report.result.layout.file), one), width, paint);
     return options.quiet ? verdict : [...verdict, ...caseLines(one, width, paint)];
   });
   if ('cases' in report.result) lines.push(...wrapText(casesLine(report), width));
@@ -61,80 +62,63 @@ const PORT_LINES = 24;
 const CHANNEL_LINES = 12;
 const FINDING_LINES = 20;
 
-function portLines({ part, show }: ReportedCase, width: number, paint: Paint): string[] {
-  if (part.ports.length === 0) return [];
-  const rows = part.ports
-    .slice(0, PORT_LINES)
-    .map((port) => [
-      cleanText(port.name),
-      port.condition,
-      show.text('pressure', port.pressure_pa),
-      port.tubing_volume_m3 === null ? '' : show.text('pressure', port.supply_pressure_pa),
-      show.text('flow', port.flow_m3_s),
-      port.tubing_time_s === null ? '' : show.text('residence_time', port.tubing_time_s),
-    ]);
-  return [
-    ...tableLines(
-      [
-        { head: 'port', side: 'right' },
-        { head: 'condition', side: 'right' },
-        { head: 'in the chip', side: 'left' },
-        { head: 'at the supply', side: 'left' },
-        { head: 'flow into chip', side: 'left' },
-        { head: 'in tubing', side: 'left' },
-      ],
-      rows,
-      width,
-      paint,
-    ),
-    ...moreLine(part.ports.length - rows.length, 'port'),
-    '',
-  ];
+function portLines({ part: { ports }, show }: ReportedCase, width: number, paint: Paint): string[] {
+  if (ports.length === 0) return [];
+  const listed = ports.slice(0, PORT_LINES);
+  const value = valueColumns(portQuantity, show);
+  const supply = value('supply_pressure_pa');
+  const time = value('tubing_time_s');
+  const table = textTable(
+    listed,
+    [
+      words('port', ({ name }) => name),
+      words('condition', ({ condition }) => condition),
+      value('pressure_pa'),
+      figures(supply.head, (port) => (port.tubing_volume_m3 === null ? '' : supply.text(port))),
+      value('flow_m3_s'),
+      figures('in tubing', (port) => (port.tubing_time_s === null ? '' : time.text(port))),
+    ],
+    width,
+  );
+  return [...headed(table, paint), ...moreLine(ports.length - listed.length, 'port'), ''];
 }
 
 function channelLines(one: ReportedCase, width: number, paint: Paint): string[] {
   const { show } = one;
-  const matter = reachesThatMatter(one, CHANNEL_LINES);
-  if (matter.rows.length === 0) return [];
-  const channels = windowedChannels(one);
-  const outside = outsideWindows(one);
-  const rows = matter.rows.map((row) => {
-    const settings = channels.get(row.channel);
-    return [
-      cleanText(row.name),
-      show.text('flow', row.flow_m3_s),
-      show.text('wall_shear', row.wall_shear_floor_mean_pa),
-      show.text('wall_shear', row.wall_shear_floor_peak_pa),
-      show.text('residence_time', row.residence_time_s),
-      settings === undefined
-        ? ''
-        : `${outside(row.channel, row.name) ? 'outside: ' : ''}${windowTexts(settings, show).join('; ')}`,
-    ];
-  });
+  const { rows, windows, of } = reachesThatMatter(one, CHANNEL_LINES);
+  if (rows.length === 0) return [];
+  const value = valueColumns(reachQuantity, show);
+  const table = textTable(
+    rows,
+    [
+      words(windows ? 'reach' : 'most sheared', ({ name }) => name),
+      value('flow_m3_s'),
+      value('wall_shear_floor_mean_pa', 'floor shear'),
+      value('wall_shear_floor_peak_pa', 'peak'),
+      value('residence_time_s', 'residence'),
+      words('window', windowCell(one)),
+    ],
+    width,
+  );
   return [
-    ...tableLines(
-      [
-        { head: matter.windows ? 'reach' : 'most sheared', side: 'right' },
-        { head: 'flow', side: 'left' },
-        { head: 'floor shear', side: 'left' },
-        { head: 'peak', side: 'left' },
-        { head: 'residence', side: 'left' },
-        { head: matter.windows ? 'window' : '', side: 'right' },
-      ],
-      rows,
-      width,
-      paint,
+    ...headed(table, paint),
+    ...moreLine(
+      of - rows.length,
+      windows ? 'reach with a window' : 'reach',
+      windows ? 'reaches with a window' : 'reaches',
     ),
-    ...moreLine(matter.of - rows.length, matter.windows ? 'reach with a window' : 'reach', 'es'),
     '',
   ];
 }
 
-function moreLine(left: number, noun: string, ending = 's'): string[] {
-  if (left <= 0) return [];
-  const [first, ...rest] = noun.split(' ');
-  const many = [left === 1 ? first : `${first}${ending}`, ...rest].join(' ');
-  return [`… and ${left} more ${many}: see the reports`];
+function headed([head, ...lines]: readonly string[], paint: Paint): string[] {
+  return [paint.bold(head), ...lines];
+}
+
+function moreLine(left: number, one: string, many?: string): string[] {
+  return left <= 0
+    ? []
+    : [`… and ${countText(left, `more ${one}`, many && `more ${many}`)}: see the reports`];
 }
 
 function findingLines(findings: readonly FindingRow[], width: number, paint: Paint): string[] {
@@ -171,40 +155,4 @@ function notRunLines({ part }: ReportedCase, width: number, paint: Paint): strin
   if (part.not_run.length === 0) return [];
   const text = `not run: ${part.not_run.map(({ rule, why }) => `${rule} (${cleanText(why)})`).join('; ')}`;
   return wrapText(text, width).map((line) => paint.dim(line));
-}
-
-interface ColumnHead {
-  readonly head: string;
-  /** Where the padding goes: numbers are padded on the left. */
-  readonly side: 'left' | 'right';
-}
-
-/** Aligned columns two spaces apart; a column without any cell is left out; the widest text column gives way to fit. */
-function tableLines(
-  heads: readonly ColumnHead[],
-  cells: readonly (readonly string[])[],
-  width: number,
-  paint: Paint,
-): string[] {
-  const used = heads.map((_, i) => i).filter((i) => cells.some((row) => row[i] !== ''));
-  const widths = used.map((i) =>
-    Math.max(displayWidth(heads[i].head), ...cells.map((row) => displayWidth(row[i]))),
-  );
-  const total = (): number =>
-    widths.reduce((sum, columnWidth) => sum + columnWidth, 0) + 2 * (widths.length - 1);
-  for (let over = total() - width; over > 0; over = total() - width) {
-    const widest = widths.indexOf(Math.max(...widths));
-    widths[widest] = Math.max(
-      4,
-      widths[widest] - over,
-      Math.max(...widths.filter((_, i) => i !== widest)) - 1,
-    );
-    if (widths.every((columnWidth) => columnWidth <= 4)) break;
-  }
-  const line = (row: readonly string[]): string =>
-    used
-      .map((i, k) => padText(clipText(row[i], widths[k]), widths[k], heads[i].side))
-      .join('  ')
-      .trimEnd();
-  return [paint.bold(line(heads.map(({ head }) => head))), ...cells.map(line)];
 }

@@ -1,22 +1,18 @@
-import { clipText, displayWidth, padText } from './plain-text.ts';
-
-export interface TextColumn {
-  readonly head: string;
-  readonly align: 'left' | 'right';
-}
+import type { Column } from './columns.ts';
+import { cleanText, clipText, displayWidth, padText } from './plain-text.ts';
 
 /**
  * Aligned columns two spaces apart, the head first; a column without any cell is left out. What does not fit into `width` is cut, the widest column first.
  */
-export function textTable(
-  columns: readonly TextColumn[],
-  rows: readonly (readonly string[])[],
+export function textTable<Row>(
+  rows: readonly Row[],
+  columns: readonly Column<Row>[],
   width: number,
 ): readonly string[] {
-  const used = columns.map((_, i) => i).filter((i) => rows.some((row) => row[i] !== ''));
-  const widths = used.map((i) =>
-    Math.max(displayWidth(columns[i].head), ...rows.map((row) => displayWidth(row[i]))),
-  );
+  const used = columns
+    .map(({ head, align, text }) => ({ head, align, cells: rows.map((row) => cleanText(text(row))) }))
+    .filter(({ cells }) => cells.some((cell) => cell !== ''));
+  const widths = used.map(({ head, cells }) => Math.max(...[head, ...cells].map(displayWidth)));
   const over = (): number =>
     widths.reduce((sum, columnWidth) => sum + columnWidth, 0) + 2 * (widths.length - 1) - width;
   while (over() > 0) {
@@ -24,14 +20,17 @@ export function textTable(
     if (widths[widest] <= LEAST_WIDTH) break;
     widths[widest]--;
   }
-  const line = (row: readonly string[]): string =>
+  const line = (texts: readonly string[]): string =>
     used
-      .map((i, k) =>
-        padText(clipText(row[i], widths[k]), widths[k], columns[i].align === 'right' ? 'left' : 'right'),
+      .map(({ align }, i) =>
+        padText(clipText(texts[i], widths[i]), widths[i], align === 'right' ? 'left' : 'right'),
       )
       .join('  ')
       .trimEnd();
-  return [line(columns.map(({ head }) => head)), ...rows.map(line)];
+  return [
+    line(used.map(({ head }) => head)),
+    ...rows.map((_, row) => line(used.map(({ cells }) => cells[row]))),
+  ];
 }
 
 const LEAST_WIDTH = 4;

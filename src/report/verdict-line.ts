@@ -1,4 +1,4 @@
-import { listText } from '../findings/words.ts';
+import { countText, listText } from '../findings/words.ts';
 import { cleanText } from './plain-text.ts';
 import { casesLeftOut, type Report } from './report.ts';
 import type { CountsRow } from './result-rows.ts';
@@ -12,10 +12,10 @@ export function verdictCounts(
   counts: Pick<CountsRow, 'blockers' | 'cautions' | 'accepted' | 'rules_not_run'>,
 ): string {
   return [
-    plural(counts.blockers, 'blocker'),
-    plural(counts.cautions, 'caution'),
+    countText(counts.blockers, 'blocker'),
+    countText(counts.cautions, 'caution'),
     `${counts.accepted} accepted`,
-    `${plural(counts.rules_not_run, 'rule')} not run`,
+    `${countText(counts.rules_not_run, 'rule')} not run`,
   ].join(', ');
 }
 
@@ -23,10 +23,6 @@ export function verdictCounts(
 export function casesLine(report: Report): string {
   const { result, cases, sheetCases } = report;
   const leftOut = casesLeftOut(report);
-  if (leftOut.length === 0) return `all ${plural(cases.length, 'case')}: ${result.verdict}`;
-  return `${cases.length} of ${plural(sheetCases.length, 'case')}: ${result.verdict}; not looked at: ${cleanText(listText(leftOut, 8))}`;
-}
-
-export function plural(count: number, noun: string): string {
-  return `${count} ${noun}${count === 1 ? '' : 's'}`;
+  if (leftOut.length === 0) return `all ${countText(cases.length, 'case')}: ${result.verdict}`;
+  return `${cases.length} of ${countText(sheetCases.length, 'case')}: ${result.verdict}; not looked at: ${cleanText(listText(leftOut, 8))}`;
 }

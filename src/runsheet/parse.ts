@@ -15,7 +15,7 @@ import type { Placed, RunSheet } from './types.ts';
  * An empty file is an empty sheet.
  * @param text the whole file
  * @param file as given on the command line; messages begin with it and a line
- * @returns SI values, with `lineOf` for messages that need the layout
+ * @returns SI values, with the tree as written, for messages that need the layout
  * @throws InputError with file and line: `culture.run.yaml:14: ports.feed.pressure: "12" has no unit; write for example "12 kPa"`
  */
 export function parseRunSheet(text: string, file: string): RunSheet {
@@ -131,13 +131,9 @@ function faultOf(issue: v.BaseIssue<unknown>, root: MapNode): Fault {
 }
 
 function toRunSheet(values: SheetValues, root: MapNode, source: Source, prefix: KeyPath): RunSheet {
-  const lineOf = (path: KeyPath): number | null => lineAt(root, path);
-  const at = (...path: KeyPath): number => lineOf(path) ?? 1;
+  const at = (...path: KeyPath): number => lineAt(root, path) ?? 1;
   const refuse = (path: KeyPath, message: string): never => {
-    throw new InputError(
-      `${source.file}:${lineOf(path) ?? 1}`,
-      `${pathText([...prefix, ...path])}: ${message}`,
-    );
+    throw new InputError(`${source.file}:${at(...path)}`, `${pathText([...prefix, ...path])}: ${message}`);
   };
   refuseLayerTwins(values, refuse);
   refusePatterns(values, refuse);
@@ -161,7 +157,7 @@ function toRunSheet(values: SheetValues, root: MapNode, source: Source, prefix: 
     accept: values.accept.map((entry, i) => ({ ...entry, line: at('accept', i) })),
     cases: [],
     changedPorts: [],
-    lineOf,
+    tree: root,
   };
 }
 

@@ -1,4 +1,5 @@
 import type { SheetValues } from './schema.ts';
+import type { MapNode } from './tree.ts';
 
 /**
  * The checked run sheet and its parts: SI units throughout (a name says so where not), every key known. The types come from the
@@ -72,6 +73,6 @@ export interface RunSheet
   readonly accept: readonly AcceptEntry[];
   /** Names and patterns that the case writes under `ports`; none for the sheet itself. */
   readonly changedPorts: readonly string[];
-  /** Line of a key path such as ['ports', 'feed', 'pressure'], 1-based; null when not written. */
-  readonly lineOf: (path: readonly (string | number)[]) => number | null;
+  /** As written: `lineAt` finds the line of a key in it. */
+  readonly tree: MapNode;
 }

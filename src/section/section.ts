@@ -2,9 +2,15 @@
  * One straight duct without a layout: of flow, pressure drop and mean wall shear one is given and the others follow.
  * Exact for developed laminar flow; see physics/duct.ts. Beside it what parallel plates as far apart as the shorter side, and as wide as the longer, would have.
  */
-import { gradientOf } from '../physics/duct.ts';
-import { entranceLength } from '../physics/entrance.ts';
-import { reynoldsNumber } from '../physics/reynolds.ts';
+import {
+  type DuctState,
+  ductState,
+  fastestTime,
+  flowForShear,
+  meanTime,
+  resistancePerLength,
+  volumeOf,
+} from '../physics/duct-state.ts';
 import { isotropicSection, sectionForm } from '../physics/section.ts';
 
 export type Given =
@@ -24,20 +30,11 @@ export interface SectionInput {
   readonly given: Given;
 }
 
-export interface SectionState {
+export interface SectionState extends DuctState {
   /** Of the rectangle computed: for an isotropic profile the one of the same depth and area. */
   readonly ductWidthM: number;
   readonly resistance: number;
-  readonly flowM3s: number;
   readonly pressurePa: number;
-  readonly meanVelocity: number;
-  readonly peakVelocity: number;
-  readonly reynolds: number;
-  readonly entranceM: number;
-  readonly floorMeanPa: number;
-  readonly floorPeakPa: number;
-  readonly sideMeanPa: number;
-  readonly sidePeakPa: number;
   readonly residenceS: number;
   readonly fastestS: number;
   readonly volumeM3: number;
@@ -58,31 +55,20 @@ export function computeSection(input: SectionInput): SectionState {
   refuse('density', densityKgM3);
   const ductWidthM = profile === 'isotropic' ? isotropicSection(widthM, depthM).ductWidthM : widthM;
   const form = sectionForm(profile, ductWidthM, depthM);
-  const resistance = viscosityPaS * form.resistance * lengthM;
+  const resistance = resistancePerLength(form, input) * lengthM;
   const flowM3s = flowOf(given);
   refuse('flow that follows', flowM3s);
-  const gradient = gradientOf(form, viscosityPaS, flowM3s);
-  const meanVelocity = flowM3s / form.areaM2;
-  const peakVelocity = meanVelocity * form.peakOverMean;
-  const reynolds = reynoldsNumber(densityKgM3, meanVelocity, form.hydraulicDiameterM, viscosityPaS);
+  const state = ductState(form, flowM3s, input);
   const gap = Math.min(ductWidthM, depthM);
   const breadth = Math.max(ductWidthM, depthM);
   return {
+    ...state,
     ductWidthM,
     resistance,
-    flowM3s,
     pressurePa: resistance * flowM3s,
-    meanVelocity,
-    peakVelocity,
-    reynolds,
-    entranceM: entranceLength(reynolds, form.hydraulicDiameterM),
-    floorMeanPa: form.floorMean * gradient,
-    floorPeakPa: form.floorPeak * gradient,
-    sideMeanPa: form.sideMean * gradient,
-    sidePeakPa: form.sidePeak * gradient,
-    residenceS: lengthM / meanVelocity,
-    fastestS: lengthM / peakVelocity,
-    volumeM3: form.areaM2 * lengthM,
+    residenceS: meanTime(state, lengthM),
+    fastestS: fastestTime(state, lengthM),
+    volumeM3: volumeOf(form, lengthM),
     plates: {
       resistance: (12 * viscosityPaS * lengthM) / (breadth * gap ** 3),
       shearPa: (6 * viscosityPaS * flowM3s) / (breadth * gap ** 2),
@@ -99,7 +85,7 @@ export function computeSection(input: SectionInput): SectionState {
         return quantity.pressurePa / resistance;
       case 'wall_shear':
         refuse('wall shear', quantity.shearPa);
-        return quantity.shearPa / (form.floorMean * viscosityPaS * form.resistance);
+        return flowForShear(form, 'floor', 'mean', quantity.shearPa, input);
       default:
         return quantity satisfies never;
     }

@@ -1,4 +1,4 @@
-import type { Channel, PortRun, Run } from '../chip/types.ts';
+import type { Channel, Chip, PortRun, Run } from '../chip/types.ts';
 import type { Network } from '../network/types.ts';
 
 /** What of a Network decides its flow. */
@@ -6,7 +6,7 @@ export type FlowNetwork = Pick<
   Network,
   'nodeCount' | 'portNode' | 'reachCount' | 'reachChannel' | 'reachFrom' | 'reachTo' | 'reachDuctMm'
 > & {
-  readonly chip: { readonly channels: readonly Pick<Channel, 'ductWidthMm' | 'depthMm'>[] };
+  readonly chip: { readonly channels: readonly Pick<Channel, 'section'>[] } & Pick<Chip, 'sections'>;
 };
 
 /** What of a Run decides a flow. */

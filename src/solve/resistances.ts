@@ -1,6 +1,6 @@
 import { viscosityAt } from '../chip/fluid.ts';
 import type { Fluid } from '../chip/types.ts';
-import { resistancePerLength } from '../physics/duct.ts';
+import { resistancePerLength } from '../physics/duct-state.ts';
 import { tubeResistance } from '../physics/tube.ts';
 import type { FlowNetwork, FlowRun } from './flow-network.ts';
 
@@ -17,32 +17,16 @@ export function nominalResistances(network: FlowNetwork, run: FlowRun): Resistan
 }
 
 function reachResistances(
-  { chip, reachCount, reachChannel, reachDuctMm }: FlowNetwork,
+  { chip: { channels, sections }, reachCount, reachChannel, reachDuctMm }: FlowNetwork,
   fluid: Fluid,
 ): Float64Array {
-  const perLength = channelResistancesPerLength(chip, fluid);
+  const ofSection = Float64Array.from(sections, (form) => resistancePerLength(form, fluid));
+  const perLength = Float64Array.from(channels, ({ section }) =>
+    section < 0 ? Number.NaN : ofSection[section],
+  );
   const resistance = new Float64Array(reachCount);
   for (let r = 0; r < reachCount; r++) resistance[r] = (perLength[reachChannel[r]] * reachDuctMm[r]) / 1000;
   return resistance;
-}
-
-/** Pa s/m³ per metre; the series is summed once for each distinct section. */
-function channelResistancesPerLength({ channels }: FlowNetwork['chip'], fluid: Fluid): Float64Array {
-  const byDepth = new Map<number, Map<number, number>>();
-  return Float64Array.from(channels, ({ ductWidthMm, depthMm }) => {
-    if (Number.isNaN(ductWidthMm) || Number.isNaN(depthMm)) return Number.NaN;
-    let byWidth = byDepth.get(depthMm);
-    if (byWidth === undefined) {
-      byWidth = new Map();
-      byDepth.set(depthMm, byWidth);
-    }
-    let value = byWidth.get(ductWidthMm);
-    if (value === undefined) {
-      value = resistancePerLength(ductWidthMm / 1000, depthMm / 1000, fluid.viscosityPaS);
-      byWidth.set(ductWidthMm, value);
-    }
-    return value;
-  });
 }
 
 function tubingResistances({ fluid, ports }: FlowRun): Float64Array {

@@ -1,9 +1,20 @@
 import { refuse } from '../chip/complain.ts';
+import { channelForm } from '../chip/sections.ts';
 import { refuseSeveral } from '../chip/targets.ts';
 import { findNodes } from '../network/find-node.ts';
+import { roomLengthM } from '../network/lengths.ts';
 import { nodeName, reachName } from '../network/names.ts';
 import type { Network } from '../network/types.ts';
-import { sectionForm } from '../physics/section.ts';
+import type { DuctForm } from '../physics/duct.ts';
+import {
+  ductState,
+  type FlowingFluid,
+  flowForShear,
+  residenceTime,
+  type ShearAt,
+  volumeOf,
+  wallShear,
+} from '../physics/duct-state.ts';
 import { nearest } from '../runsheet/nearest.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { RunSheet, TargetEntry } from '../runsheet/types.ts';
@@ -22,10 +33,17 @@ export type Observed =
 export type Measure =
   /** The value is x, with its sign: flow and pressure. */
   | { readonly kind: 'signed' }
-  /** factor · |x|: wall shear and mean velocity say how much flows, not which way. */
-  | { readonly kind: 'size'; readonly factor: number }
+  /** Wall shear on the floor says how much flows, not which way. */
+  | {
+      readonly kind: 'shear';
+      readonly form: DuctForm;
+      readonly at: ShearAt;
+      readonly fluid: FlowingFluid;
+    }
+  /** |x|/A, the mean velocity. */
+  | { readonly kind: 'velocity'; readonly form: DuctForm }
   /** V/|x|, the mean residence time. */
-  | { readonly kind: 'time'; readonly volumeM3: number };
+  | { readonly kind: 'time'; readonly form: DuctForm; readonly lengthM: number };
 
 /** A target of the run sheet, found in the network. */
 export interface Wanted {
@@ -93,10 +111,12 @@ export function targetValue(measure: Measure, x: number): number {
   switch (measure.kind) {
     case 'signed':
       return x;
-    case 'size':
-      return measure.factor * Math.abs(x);
+    case 'shear':
+      return wallShear(ductState(measure.form, x, measure.fluid), 'floor', measure.at);
+    case 'velocity':
+      return Math.abs(x) / measure.form.areaM2;
     case 'time':
-      return measure.volumeM3 / Math.abs(x);
+      return residenceTime(volumeOf(measure.form, measure.lengthM), x);
     default:
       return measure satisfies never;
   }
@@ -107,10 +127,12 @@ export function observedFor(measure: Measure, value: number): number {
   switch (measure.kind) {
     case 'signed':
       return value;
-    case 'size':
-      return value / measure.factor;
+    case 'shear':
+      return flowForShear(measure.form, 'floor', measure.at, value, measure.fluid);
+    case 'velocity':
+      return value * measure.form.areaM2;
     case 'time':
-      return measure.volumeM3 / value;
+      return volumeOf(measure.form, measure.lengthM) / value;
     default:
       return measure satisfies never;
   }
@@ -235,28 +257,22 @@ function measureOf(
 ): Measure {
   if (observed.kind !== 'reach' || quantity === 'flow' || quantity === 'pressure') return { kind: 'signed' };
   const { chip } = network;
-  const { ductWidthMm, depthMm, profile, name } = chip.channels[network.reachChannel[observed.reach]];
-  if (!(ductWidthMm > 0 && depthMm > 0)) {
+  const channel = network.reachChannel[observed.reach];
+  const form = channelForm(chip, channel);
+  if (form === null) {
     refuseTarget(
       sheet,
       index,
-      `the depth of channel ${quote(name)} is not known, so nothing in it can be computed; give its layer a depth`,
+      `the depth of channel ${quote(chip.channels[channel].name)} is not known, so nothing in it can be computed; give its layer a depth`,
     );
   }
-  const form = sectionForm(profile, ductWidthMm / 1000, depthMm / 1000);
   switch (quantity) {
-    case 'wall_shear': {
-      // τ = (τ/G) G with G = µ (R/µL) Q
-      const perGradient = at === 'mean' ? form.floorMean : form.floorPeak;
-      return { kind: 'size', factor: perGradient * run.fluid.viscosityPaS * form.resistance };
-    }
+    case 'wall_shear':
+      return { kind: 'shear', form, at, fluid: run.fluid };
     case 'velocity':
-      return { kind: 'size', factor: 1 / form.areaM2 };
-    case 'residence_time': {
-      // what a joint adds is resistance, not room
-      const roomM = (network.reachDuctMm[observed.reach] - network.reachJointMm[observed.reach]) / 1000;
-      return { kind: 'time', volumeM3: form.areaM2 * roomM };
-    }
+      return { kind: 'velocity', form };
+    case 'residence_time':
+      return { kind: 'time', form, lengthM: roomLengthM(network, observed.reach) };
     default:
       return quantity satisfies never;
   }

@@ -7,7 +7,7 @@
  * A block of c columns with r rows below them is a panel of (c + r) rows × c columns, stored row by row; of its top c × c square only what lies below the
  * diagonal is used.
  */
-import { byGroup } from '../groups.ts';
+import { toGroups } from '../groups.ts';
 import { orderForLittleFill } from './order.ts';
 import { type Adjacency, adjacencyOf, type GraphPattern } from './pattern.ts';
 
@@ -139,10 +139,10 @@ function postorder({ parent, count }: Tree): Int32Array {
 
 function byFallingCount(count: Int32Array): Int32Array {
   const n = count.length;
-  return byGroup(
+  return toGroups(
     n + 1,
     count.map((c) => n - c),
-  ).member;
+  ).item;
 }
 
 function renumbered({ parent, count }: Tree, tour: Int32Array): Tree {

@@ -8,7 +8,7 @@
  * Words of the paper: a *variable* is a node not yet eliminated, an *element* is an eliminated node that stands for the clique of the variables it was
  * joined to (its *boundary*). The list of a variable holds elements first, then variables; the list of an element is its boundary.
  */
-import { byGroup } from '../groups.ts';
+import { toGroups } from '../groups.ts';
 import type { Adjacency } from './pattern.ts';
 
 /** Order of elimination: result[k] is the node to eliminate k-th. */
@@ -343,7 +343,7 @@ function sequenceOf(q: QuotientGraph): Int32Array {
     }
     rank[i] = pivotRank[root] < 0 ? pivotCount : pivotRank[root];
   }
-  const { first, member: order } = byGroup(pivotCount + 1, rank);
+  const { first, item: order } = toGroups(pivotCount + 1, rank);
   order.subarray(first[pivotCount]).sort((a, b) => listLength[a] - listLength[b] || a - b);
   return order;
 }

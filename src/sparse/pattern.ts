@@ -19,7 +19,7 @@ export interface Adjacency {
 
 /** Lists the distinct neighbours of every node. O(nodes + edges). */
 export function adjacencyOf({ nodeCount, edgeFrom, edgeTo }: GraphPattern): Adjacency {
-  const { first, member: side } = sidesByNode(nodeCount, edgeFrom, edgeTo);
+  const { first, item: side } = sidesByNode(nodeCount, edgeFrom, edgeTo);
   const start = new Int32Array(nodeCount + 1);
   const neighbour = new Int32Array(side.length);
   const lastSeenBy = new Int32Array(nodeCount).fill(-1);

@@ -7,7 +7,8 @@ import { densityAt, viscosityAt } from '../chip/fluid.ts';
  * Cost: one more solve with the nominal factor for each flow or pressure, and O(reaches + channels) sums.
  */
 import { GRAVITY_M_S2 } from '../physics/constants.ts';
-import type { DuctFactors, DuctForm } from '../physics/duct.ts';
+import type { DuctFactors } from '../physics/duct.ts';
+import { shearPerGradient } from '../physics/duct-state.ts';
 import { tubeResistance } from '../physics/tube.ts';
 import { type Gradient, gradientOfFlow, gradientOfInflow, gradientOfPressure } from '../solve/sensitivity.ts';
 import { type SpreadModel, shareOf, sizeOf } from './model.ts';
@@ -68,9 +69,13 @@ export function derivativesOf(model: SpreadModel): Derivatives {
           return flowRow(subject.reach).map((d) => subject.sign * d);
         case 'shear': {
           // τ = µ (R/µL) (τ/G) |Q|
-          const factor = `${subject.wall}${subject.at === 'mean' ? 'Mean' : 'Peak'}` as const;
           const row = magnitudeRow(subject.reach, value);
-          addLogs(row, subject.reach, value, (of) => of.resistance + of[factor]);
+          addLogs(
+            row,
+            subject.reach,
+            value,
+            (of) => of.resistance + shearPerGradient(of, subject.wall, subject.at),
+          );
           logs.viscosity.forEach((d, k) => {
             row[k] += value * d;
           });
@@ -116,10 +121,10 @@ export function derivativesOf(model: SpreadModel): Derivatives {
     pick: (of: DuctFactors) => number,
     areaPower = 0,
   ): void {
-    const channel = network.reachChannel[reach];
-    const form = state.form[channel];
+    const section = model.sections.ofReach[reach];
+    const form = state.form[section];
     if (form === null) return;
-    for (const { variable, byWidth, byDepth } of logs.ofSection[model.sections.ofChannel[channel]]) {
+    for (const { variable, byWidth, byDepth } of logs.ofSection[section]) {
       row[variable] +=
         value *
         (pick(form.byWidth) * byWidth + pick(form.byDepth) * byDepth + areaPower * (byWidth + byDepth));
@@ -202,13 +207,9 @@ type GradientRow = (gradient: Gradient) => Float64Array;
 /** From a gradient by resistances, pressures and injections to one by x: the chain rule, all edges summed by section first. */
 function gradientRows(model: SpreadModel, logs: LogDerivatives): GradientRow {
   const { network, run, variables, drives, sections, factor, balancedBy, holder, nominalState } = model;
-  const { reachCount, reachChannel } = network;
+  const { ofReach } = sections;
   const { driveNode, tubingEdge } = factor.prepared;
   const { resistance } = factor.graphFactor;
-  const sectionForm: (DuctForm | null)[] = sections.section.map(() => null);
-  sections.ofChannel.forEach((s, c) => {
-    sectionForm[s] = nominalState.form[c];
-  });
   const tubing = tubingDerivatives(model, logs);
   const bySection = new Float64Array(sections.section.length);
 
@@ -216,15 +217,15 @@ function gradientRows(model: SpreadModel, logs: LogDerivatives): GradientRow {
     const row = new Float64Array(variables.length);
     bySection.fill(0);
     let whole = 0;
-    for (let r = 0; r < reachCount; r++) {
+    for (let r = 0; r < network.reachCount; r++) {
       const byLog = gradient.resistance[r] * resistance[r];
       // parts without a pressure or a size have no flows; they do not touch this output
       if (Number.isNaN(byLog)) continue;
       whole += byLog;
-      bySection[sections.ofChannel[reachChannel[r]]] += byLog;
+      bySection[ofReach[r]] += byLog;
     }
     for (let s = 0; s < bySection.length; s++) {
-      const form = sectionForm[s];
+      const form = nominalState.form[s];
       if (form === null || bySection[s] === 0) continue;
       for (const { variable, byWidth, byDepth } of logs.ofSection[s]) {
         row[variable] +=

@@ -1,10 +1,9 @@
 import { isAbove } from '../findings/rule.ts';
 import { reachName } from '../network/names.ts';
-import { reynoldsNumber } from '../physics/reynolds.ts';
 import { acceptedLimits } from './accepted.ts';
 import { type EvenGroup, evennessOf } from './evenness.ts';
 import type { ChipState, SpreadModel } from './model.ts';
-import { flowingIn, isKept, type Output, outputValue, timeOutputs } from './outputs.ts';
+import { ductStateOf, isKept, type Output, outputValue, timeOutputs } from './outputs.ts';
 import { channelReaches } from './passages.ts';
 
 /**
@@ -132,16 +131,8 @@ function laminarityOf(model: SpreadModel): (state: ChipState) => boolean {
   });
   return (state) => {
     for (let reach = 0; reach < reachCount; reach++) {
-      const flowing = flowingIn(reach, model, state);
-      if (flowing === null) continue;
-      const { form, flow } = flowing;
-      const reynolds = reynoldsNumber(
-        state.densityKgM3,
-        flow / form.areaM2,
-        form.hydraulicDiameterM,
-        state.viscosityPaS,
-      );
-      if (isAbove(reynolds, limit[reach])) return false;
+      const duct = ductStateOf(reach, model, state);
+      if (duct !== null && isAbove(duct.reynolds, limit[reach])) return false;
     }
     return true;
   };

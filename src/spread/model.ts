@@ -5,9 +5,11 @@
  */
 
 import { densityAt, viscosityAt } from '../chip/fluid.ts';
-import type { Chip, Fluid } from '../chip/types.ts';
+import type { Fluid } from '../chip/types.ts';
+import type { Network } from '../network/types.ts';
 import { GRAVITY_M_S2 } from '../physics/constants.ts';
 import type { DuctForm } from '../physics/duct.ts';
+import { type FlowingFluid, resistancePerLength } from '../physics/duct-state.ts';
 import { type Profile, sectionForm } from '../physics/section.ts';
 import { tubeResistance } from '../physics/tube.ts';
 import { drivesOf, type PortDrive } from '../solve/drives.ts';
@@ -26,10 +28,9 @@ import type { Variable } from './variables.ts';
 
 /** What one x makes of the chip. Its columns are overwritten by the next x. */
 export interface ChipState {
-  /** Duct of each channel; null where a width or depth is unknown. */
+  /** Duct of each section, in the order of `SpreadModel.sections`; null where a width or depth is unknown. */
   readonly form: readonly (DuctForm | null)[];
-  readonly viscosityPaS: number;
-  readonly densityKgM3: number;
+  readonly fluid: FlowingFluid;
   readonly flow: GraphFlow;
   /** Given flow of each port into the chip, 0 for the others. */
   readonly givenFlow: Float64Array;
@@ -66,7 +67,7 @@ export function prepareModel(
   const factor = factorFlow(watching({ network, run }, kinds, pressureNodes), kinds);
   const nominal = flowStateOf(factor, drives);
   const balancedBy = balancingPorts(factor, drives);
-  const sections = gatherSections(network.chip, variables);
+  const sections = gatherSections(network, variables);
   const holder = holdersOf(factor.prepared.driveNode, drives);
   const at = evaluator({ network, run, variables, drives, factor, balancedBy, sections, holder });
   const nominalState = at(new Float64Array(variables.length));
@@ -116,9 +117,9 @@ function balancingPorts({ partOutlook, prepared }: FlowFactor, drives: readonly 
   return balancedBy;
 }
 
-/** Channels that are always of one width and depth share a section. */
+/** Channels that are always of one width and depth share a section. The chip has fewer: there they need be so as drawn only. */
 export interface Sections {
-  readonly ofChannel: Int32Array;
+  readonly ofReach: Int32Array;
   readonly section: readonly Section[];
 }
 
@@ -135,7 +136,7 @@ export interface Section {
   readonly ownVariable: number;
 }
 
-function gatherSections({ channels }: Chip, variables: readonly Variable[]): Sections {
+function gatherSections({ chip, reachChannel }: Network, variables: readonly Variable[]): Sections {
   const depthOfLayer = new Map<number, number>();
   const ownOfChannel = new Map<number, number>();
   let maskVariable = -1;
@@ -148,7 +149,7 @@ function gatherSections({ channels }: Chip, variables: readonly Variable[]): Sec
   });
   const known = new Map<string, number>();
   const section: Section[] = [];
-  const ofChannel = Int32Array.from(channels, (channel, c) => {
+  const ofChannel = chip.channels.map((channel, c) => {
     const made: Section = {
       drawnWidthM: channel.drawnWidthMm / 1000,
       ductWidthM: channel.ductWidthMm / 1000,
@@ -168,7 +169,7 @@ function gatherSections({ channels }: Chip, variables: readonly Variable[]): Sec
     }
     return index;
   });
-  return { ofChannel, section };
+  return { ofReach: reachChannel.map((channel) => ofChannel[channel]), section };
 }
 
 type Parts = Pick<
@@ -178,9 +179,9 @@ type Parts = Pick<
 
 function evaluator(parts: Parts): SpreadModel['at'] {
   const { network, run, variables, drives, factor, balancedBy, sections, holder } = parts;
-  const { chip, reachCount, reachChannel, reachDuctMm, portNode } = network;
-  const { channels } = chip;
+  const { reachCount, reachDuctMm, portNode } = network;
   const { fluid, ports } = run;
+  const { section, ofReach } = sections;
   const { driveNode, tubingEdge, graph } = factor.prepared;
   const indexOf = (kind: Variable['kind']): number =>
     variables.findIndex((variable) => variable.kind === kind);
@@ -195,8 +196,7 @@ function evaluator(parts: Parts): SpreadModel['at'] {
     tubing.map(({ temperatureK }) => (temperatureK === null ? null : viscosityAt(fluid, temperatureK))),
   );
 
-  const sectionForm: (DuctForm | null)[] = sections.section.map(() => null);
-  const form: (DuctForm | null)[] = channels.map(() => null);
+  const form: (DuctForm | null)[] = section.map(() => null);
   const resistance = new Float64Array(graph.from.length);
   const fixedPressure = nominalLoad.fixedPressure.slice();
   const injection = nominalLoad.injection.slice();
@@ -205,20 +205,22 @@ function evaluator(parts: Parts): SpreadModel['at'] {
   let graphFactor: GraphFactor | undefined;
 
   return (x) => {
-    for (let s = 0; s < sectionForm.length; s++) {
-      const made = formAt(sections.section[s], variables, x);
+    for (let s = 0; s < form.length; s++) {
+      const made = formAt(section[s], variables, x);
       if (made === 'closed') return null;
-      sectionForm[s] = made;
+      form[s] = made;
     }
-    for (let c = 0; c < form.length; c++) form[c] = sectionForm[sections.ofChannel[c]];
     const kelvin = fluid.temperatureK + (temperature < 0 ? 0 : x[temperature]);
     const thinning = viscosity < 0 ? 1 : 1 + shareOf(variables[viscosity], x[viscosity], fluid.viscosityPaS);
     const found = temperature < 0 ? fluid : fluidAt(fluid, kelvin);
     if (found === null || !(thinning > 0)) return null;
+    const { densityKgM3 } = found;
     const viscosityPaS = found.viscosityPaS * thinning;
+    const inside = { viscosityPaS, densityKgM3 };
     for (let r = 0; r < reachCount; r++) {
-      const duct = form[reachChannel[r]];
-      resistance[r] = duct === null ? Number.NaN : (viscosityPaS * duct.resistance * reachDuctMm[r]) / 1000;
+      const duct = form[ofReach[r]];
+      resistance[r] =
+        duct === null ? Number.NaN : (resistancePerLength(duct, inside) * reachDuctMm[r]) / 1000;
     }
     for (let p = 0; p < ports.length; p++) {
       if (tubingEdge[p] < 0) continue;
@@ -232,10 +234,10 @@ function evaluator(parts: Parts): SpreadModel['at'] {
       }
       resistance[tubingEdge[p]] = sum;
     }
-    setLoad(x, found.densityKgM3);
+    setLoad(x, densityKgM3);
     graphFactor = factorGraph(analysis, resistance, graphFactor);
     const flow = solveGraph(graphFactor, { fixedPressure, injection });
-    return { form, viscosityPaS, densityKgM3: found.densityKgM3, flow, givenFlow, injection };
+    return { form, fluid: inside, flow, givenFlow, injection };
   };
 
   function setLoad(x: Float64Array, densityKgM3: number): void {
@@ -303,10 +305,7 @@ function formAt(
 /** A mask whose opening is a smaller share of the duct than this lets nothing etch; the form's difference quotients need more too. */
 const LEAST_OPENING = 1e-4;
 
-function fluidAt(
-  fluid: Fluid,
-  kelvin: number,
-): { readonly viscosityPaS: number; readonly densityKgM3: number } | null {
+function fluidAt(fluid: Fluid, kelvin: number): FlowingFluid | null {
   if (kelvin === fluid.temperatureK) return fluid;
   try {
     return {

@@ -3,9 +3,21 @@ import { InputError } from '../errors.ts';
 import { NEAR_VACUUM_PA } from '../findings/pressure.ts';
 import { isAbove, isBelow } from '../findings/rule.ts';
 import { findNodes } from '../network/find-node.ts';
+import { roomLengthM } from '../network/lengths.ts';
 import { nodeName, reachName } from '../network/names.ts';
 import type { Network } from '../network/types.ts';
-import { floorShareInside, gradientOf, type ShearRange, sideShareInside } from '../physics/duct.ts';
+import type { ShearRange } from '../physics/duct.ts';
+import {
+  type DuctState,
+  ductState,
+  fastestTime,
+  residenceTime,
+  type ShearAt,
+  shareInside,
+  volumeOf,
+  type Wall,
+  wallShear,
+} from '../physics/duct-state.ts';
 import { nearest } from '../runsheet/nearest.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { ChannelEntry, PumpLimitEntry, ShearWindow, TargetEntry } from '../runsheet/types.ts';
@@ -14,8 +26,6 @@ import type { FlowState } from '../solve/types.ts';
 import { acceptedLimits, type KeptLimits } from './accepted.ts';
 import type { ChipState, SpreadModel } from './model.ts';
 import { channelReaches, passagesOf } from './passages.ts';
-
-export type Wall = 'floor' | 'side';
 
 /** What a number is computed from. Flows of reaches count in the direction of the nominal flow. */
 export type Subject =
@@ -30,7 +40,7 @@ export type Subject =
       readonly sign: 1 | -1;
       readonly asked: 'size' | 'signed';
     }
-  | { readonly kind: 'shear'; readonly reach: number; readonly wall: Wall; readonly at: 'mean' | 'peak' }
+  | { readonly kind: 'shear'; readonly reach: number; readonly wall: Wall; readonly at: ShearAt }
   | { readonly kind: 'velocity'; readonly reach: number }
   /** Through reaches that fluid passes one after the other: volume over flow, or on the axis. */
   | { readonly kind: 'time'; readonly reaches: readonly number[]; readonly at: 'mean' | 'fastest' }
@@ -124,25 +134,19 @@ export function outputValue({ subject }: Output, model: SpreadModel, state: Chip
     case 'reach flow':
       return known(model.nominal.reachFlow[subject.reach], subject.sign * state.flow.flow[subject.reach]);
     case 'shear': {
-      const section = flowingIn(subject.reach, model, state);
-      if (section === null) return Number.NaN;
-      const { form, gradient } = section;
-      if (subject.wall === 'floor')
-        return gradient * (subject.at === 'mean' ? form.floorMean : form.floorPeak);
-      return gradient * (subject.at === 'mean' ? form.sideMean : form.sidePeak);
+      const duct = ductStateOf(subject.reach, model, state);
+      return duct === null ? Number.NaN : wallShear(duct, subject.wall, subject.at);
     }
-    case 'velocity': {
-      const section = flowingIn(subject.reach, model, state);
-      return section === null ? Number.NaN : section.flow / section.form.areaM2;
-    }
+    case 'velocity':
+      return ductStateOf(subject.reach, model, state)?.meanVelocity ?? Number.NaN;
     case 'time': {
       let seconds = 0;
       for (const reach of subject.reaches) seconds += secondsIn(reach, subject.at, model, state);
       return Number.isFinite(seconds) ? seconds : Number.NaN;
     }
     case 'share inside': {
-      const section = flowingIn(subject.reach, model, state);
-      return section === null ? Number.NaN : shareInside(section, subject.wall, subject.range);
+      const duct = ductStateOf(subject.reach, model, state);
+      return duct === null ? Number.NaN : shareInside(duct, subject.wall, subject.range);
     }
     default:
       return subject satisfies never;
@@ -157,27 +161,15 @@ export function portFlow(port: number, { drives, factor, nominal }: SpreadModel,
   return state.flow.inflow[node] - state.injection[node];
 }
 
-export interface Flowing {
-  readonly form: NonNullable<ChipState['form'][number]>;
-  /** Magnitudes. */
-  readonly flow: number;
-  readonly gradient: number;
-}
-
 /** What flows in a reach; null where it is not known. */
-export function flowingIn(
+export function ductStateOf(
   reach: number,
-  { network, nominal }: SpreadModel,
-  state: ChipState,
-): Flowing | null {
-  const form = state.form[network.reachChannel[reach]];
-  if (form === null || Number.isNaN(nominal.reachFlow[reach])) return null;
-  const flow = Math.abs(state.flow.flow[reach]);
-  return { form, flow, gradient: gradientOf(form, state.viscosityPaS, flow) };
-}
-
-export function shareInside({ form, gradient }: Flowing, wall: Wall, range: ShearRange): number {
-  return wall === 'floor' ? floorShareInside(form, gradient, range) : sideShareInside(form, gradient, range);
+  { sections, nominal }: SpreadModel,
+  { form, fluid, flow }: ChipState,
+): DuctState | null {
+  const duct = form[sections.ofReach[reach]];
+  if (duct === null || Number.isNaN(nominal.reachFlow[reach])) return null;
+  return ductState(duct, flow.flow[reach], fluid);
 }
 
 /** Infinite without flow, NaN where nothing is known. */
@@ -187,16 +179,12 @@ export function secondsIn(
   model: SpreadModel,
   state: ChipState,
 ): number {
-  const section = flowingIn(reach, model, state);
-  if (section === null) return Number.NaN;
-  const { form, flow } = section;
-  const volume = form.areaM2 * roomM(model.network, reach);
-  return volume / flow / (at === 'mean' ? 1 : form.peakOverMean);
-}
-
-/** Length with room for fluid (m): what joints add is resistance only. */
-function roomM({ reachDuctMm, reachJointMm }: Network, reach: number): number {
-  return (reachDuctMm[reach] - reachJointMm[reach]) / 1000;
+  const duct = ductStateOf(reach, model, state);
+  if (duct === null) return Number.NaN;
+  const lengthM = roomLengthM(model.network, reach);
+  return at === 'mean'
+    ? residenceTime(volumeOf(duct.form, lengthM), duct.flowM3s)
+    : fastestTime(duct, lengthM);
 }
 
 /** A number that the chip as drawn does not have has no spread either. */
@@ -363,7 +351,7 @@ function reachFlowOutput(network: Network, nominal: FlowState, reach: number): O
   };
 }
 
-function shearOutput(network: Network, reach: number, wall: Wall, at: 'mean' | 'peak'): Output {
+function shearOutput(network: Network, reach: number, wall: Wall, at: ShearAt): Output {
   return {
     ...PLAIN,
     on: 'reach',

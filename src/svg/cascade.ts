@@ -2,8 +2,8 @@
  * Which value each CSS property of an element has: presentation attributes, then `<style>` rules by specificity and
  * order, then the `style` attribute, then the same again for what is `!important` (CSS Cascade 4, 6; SVG 2, 6.6).
  */
+import { remembered } from '../by-key.ts';
 import { InputError } from '../errors.ts';
-import { remembered } from '../groups.ts';
 import { type Declarations, parseStyleAttribute, type Specified } from './declarations.ts';
 import { readSheets, type SheetRule } from './sheets.ts';
 import { INITIAL_STYLE } from './style.ts';

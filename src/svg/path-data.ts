@@ -3,7 +3,6 @@
  * A browser draws a path up to its first error; here the error is raised, because half a channel is a wrong chip.
  * Cost: linear in the text.
  */
-import { NUMBER } from './numbers.ts';
 import type { PathCommand } from './types.ts';
 import { quoted, ValueError } from './value-error.ts';
 
@@ -209,25 +208,33 @@ class NumberReader {
 
   number(): number {
     const text = this.#text;
-    NEXT_NUMBER.lastIndex = this.at;
-    const found = NEXT_NUMBER.exec(text)?.[0];
-    if (found === undefined) throw this.fault('a number is needed', this.#after(/[+-]?\.?/y, this.at));
-    const end = this.at + found.length;
-    const letter = text.charCodeAt(end);
-    if ((letter === 0x65 || letter === 0x45) && !/e/i.test(found))
-      throw this.fault('an exponent needs digits', this.#after(/[+-]?/y, end + 1));
-    const value = Number(found);
-    if (!Number.isFinite(value)) throw this.fault('the number is too large', found);
-    this.at = end;
+    const start = this.at;
+    let i = start;
+    let c = text.charCodeAt(i);
+    if (c === PLUS || c === MINUS) c = text.charCodeAt(++i);
+    const firstDigit = i;
+    while (isDigit(c)) c = text.charCodeAt(++i);
+    let digits = i - firstDigit;
+    if (c === POINT) {
+      const fraction = i + 1;
+      c = text.charCodeAt(++i);
+      while (isDigit(c)) c = text.charCodeAt(++i);
+      digits += i - fraction;
+    }
+    if (digits === 0) throw this.fault('a number is needed', text[i]);
+    if (c === 0x65 || c === 0x45) {
+      let j = i + 1;
+      const sign = text.charCodeAt(j);
+      if (sign === PLUS || sign === MINUS) j++;
+      if (!isDigit(text.charCodeAt(j))) throw this.fault('an exponent needs digits', text[j]);
+      while (isDigit(text.charCodeAt(j))) j++;
+      i = j;
+    }
+    const value = Number(text.slice(start, i));
+    if (!Number.isFinite(value)) throw this.fault('the number is too large', text[start]);
+    this.at = i;
     this.#fresh = false;
     return value;
-  }
-
-  /** The character behind what a pattern passes over; undefined at the end of the text. */
-  #after(pattern: RegExp, at: number): string | undefined {
-    pattern.lastIndex = at;
-    pattern.test(this.#text);
-    return this.#text[pattern.lastIndex];
   }
 
   fault(why: string, found: string | undefined): ValueError {
@@ -238,13 +245,18 @@ class NumberReader {
   }
 }
 
-const NEXT_NUMBER = new RegExp(NUMBER, 'y');
+const PLUS = 0x2b;
+const MINUS = 0x2d;
+const POINT = 0x2e;
+
+function isDigit(code: number): boolean {
+  return code >= 0x30 && code <= 0x39;
+}
 
 function isSpace(code: number): boolean {
   return code === 0x20 || code === 0x0a || code === 0x09 || code === 0x0d || code === 0x0c;
 }
 
 function startsNumber(code: number): boolean {
-  // A digit, +, − or a point.
-  return (code >= 0x30 && code <= 0x39) || code === 0x2b || code === 0x2d || code === 0x2e;
+  return isDigit(code) || code === PLUS || code === MINUS || code === POINT;
 }

@@ -6,8 +6,8 @@
  * (`k="_12"`) to the tag read here, and text carries keys too (`_3;`).
  * Limits: no validation against a DTD; nothing outside the file is opened. Cost: linear in the text.
  */
+import { remembered } from '../by-key.ts';
 import { InputError } from '../errors.ts';
-import { remembered } from '../groups.ts';
 import { decodeReferences, type Entities, readEntities } from './entities.ts';
 import { MAX_ELEMENTS } from './limits.ts';
 import { quoted } from './value-error.ts';

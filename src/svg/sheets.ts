@@ -5,11 +5,12 @@
  * rule with an unknown selector).
  * Cost: rules are filed under the id, class or tag of their last part, so an element meets only those that could fit.
  */
+
 import { compile, type Options } from 'css-select';
 import type { Block, CssNode, Rule, Selector } from 'css-tree';
 import parseCss from 'css-tree/parser';
+import { grouped } from '../by-key.ts';
 import { InputError } from '../errors.ts';
-import { grouped } from '../groups.ts';
 import { type Declarations, toDeclarations } from './declarations.ts';
 import { MAX_SELECTOR_STEPS } from './limits.ts';
 import { attribute, type XmlElement } from './tree.ts';

@@ -43,11 +43,8 @@ describe('the list of near pairs', () => {
     // and every piece lists its own
     const ofPieces: string[] = [];
     for (let i = 0; i < count; i++) {
-      for (let k = near.firstPair[i]; k < near.firstPair[i + 1]; k++) {
-        const pair = near.pairOf[k];
-        expect([near.pairA[pair], near.pairB[pair]]).toContain(i);
-        if (near.pairA[pair] === i) ofPieces.push(`${i}-${near.pairB[pair]}`);
-      }
+      for (const j of piecesNear(near, i)) if (i < j) ofPieces.push(`${i}-${j}`);
+      expect(piecesNear(near, i).length).toBe(near.firstPair[i + 1] - near.firstPair[i]);
     }
     expect(ofPieces.sort()).toEqual(pairs);
     expect(near.pairOf.length).toBe(2 * near.pairCount);

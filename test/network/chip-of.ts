@@ -1,3 +1,4 @@
+import { SectionList } from '../../src/chip/sections.ts';
 import type { Channel, Chip, ChipLayer, Port, Run } from '../../src/chip/types.ts';
 
 export interface ChannelSpec {
@@ -29,6 +30,7 @@ export function chipOf(channels: readonly ChannelSpec[], ports: readonly PortSpe
     depthOrigin: 'run sheet',
     profile: 'rectangle',
   }));
+  const sections = new SectionList();
   return {
     file: 'test.svg',
     unitMm: 1,
@@ -37,7 +39,8 @@ export function chipOf(channels: readonly ChannelSpec[], ports: readonly PortSpe
     heightMm: null,
     planes: ['chip', 'top'],
     layers,
-    channels: channels.map((spec, ordinal) => toChannel(spec, ordinal, depths)),
+    channels: channels.map((spec, ordinal) => toChannel(spec, ordinal, depths, sections)),
+    sections: sections.forms,
     ports: ports.map(toPort),
     edge: null,
     sizeMm: null,
@@ -84,7 +87,12 @@ export function runOf({ channels, ports }: Pick<Chip, 'channels' | 'ports'>): Ru
   };
 }
 
-function toChannel(spec: ChannelSpec, ordinal: number, depths: readonly string[]): Channel {
+function toChannel(
+  spec: ChannelSpec,
+  ordinal: number,
+  depths: readonly string[],
+  sections: SectionList,
+): Channel {
   return {
     name: spec.name,
     drawnName: spec.name,
@@ -97,6 +105,7 @@ function toChannel(spec: ChannelSpec, ordinal: number, depths: readonly string[]
     depthMm: spec.depthMm ?? 0.1,
     depthOrigin: 'run sheet',
     profile: 'rectangle',
+    section: sections.indexOf('rectangle', spec.widthMm, spec.depthMm ?? 0.1),
     linecap: 'butt',
     centrelines: spec.lines.map((line, k) => ({
       points: Float64Array.from(line),

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import type { DuctForm } from '../../src/physics/duct.ts';
-import { ductForm, resistancePerLength } from '../../src/physics/duct.ts';
+import { ductForm } from '../../src/physics/duct.ts';
+import { resistancePerLength } from '../../src/physics/duct-state.ts';
 import { floorShearAt } from '../physics/wall-shear.ts';
 
 /** Fanning friction factor × Reynolds on the hydraulic diameter: G D_h²/(2 µ u_mean). */
@@ -87,10 +88,16 @@ describe('the torsion analogy', () => {
 describe('resistances', () => {
   // H. Bruus, Theoretical Microfluidics, OUP 2008, table of resistances at 1 mPa s and 1 mm (from memory), 1e11 Pa s/m³.
   it('rectangle 100 × 300 µm and square 100 µm are those of Bruus to the 2 decimals printed', () => {
-    expect(resistancePerLength(300e-6, 100e-6, 1e-3) * 1e-3).toBeGreaterThan(0.505e11);
-    expect(resistancePerLength(300e-6, 100e-6, 1e-3) * 1e-3).toBeLessThan(0.515e11);
+    expect(resistancePerLength(ductForm(300e-6, 100e-6), { viscosityPaS: 1e-3 }) * 1e-3).toBeGreaterThan(
+      0.505e11,
+    );
+    expect(resistancePerLength(ductForm(300e-6, 100e-6), { viscosityPaS: 1e-3 }) * 1e-3).toBeLessThan(
+      0.515e11,
+    );
     // 2.8454… as printed is cut to 2.84, not rounded to 2.85.
-    expect(Math.floor(resistancePerLength(100e-6, 100e-6, 1e-3) * 1e-3 * 1e-9)).toBe(284);
+    expect(
+      Math.floor(resistancePerLength(ductForm(100e-6, 100e-6), { viscosityPaS: 1e-3 }) * 1e-3 * 1e-9),
+    ).toBe(284);
   });
 
   it('plates 100 × 300 µm are those of Bruus: the flat-duct part of the series', () => {
@@ -98,10 +105,9 @@ describe('resistances', () => {
     const plates = (12 * 1e-3 * 1e-3) / (300e-6 * 100e-6 ** 3);
     expect(plates / 1e11).toBeCloseTo(0.4, 10);
     const form = ductForm(300e-6, 100e-6);
-    expect(plates / (resistancePerLength(300e-6, 100e-6, 1e-3) * 1e-3)).toBeCloseTo(
-      12 / (form.resistance * 300e-6 * 100e-6 ** 3),
-      12,
-    );
+    expect(
+      plates / (resistancePerLength(ductForm(300e-6, 100e-6), { viscosityPaS: 1e-3 }) * 1e-3),
+    ).toBeCloseTo(12 / (form.resistance * 300e-6 * 100e-6 ** 3), 12);
   });
 
   it('the square constant R h⁴/(µL) is 28.4541537695623 (computed to 40 digits)', () => {
@@ -115,7 +121,9 @@ describe('resistances', () => {
     [500e-6, 50e-6, 20e-3, 4.09829455372e12],
     [200e-6, 100e-6, 10e-3, 8.74578158247e11],
   ])('%d × %d m, %d m long: %d Pa s/m³ to 12 figures', (width, depth, length, resistance) => {
-    expect((resistancePerLength(width, depth, 1e-3) * length) / resistance).toBeCloseTo(1, 11);
+    expect(
+      (resistancePerLength(ductForm(width, depth), { viscosityPaS: 1e-3 }) * length) / resistance,
+    ).toBeCloseTo(1, 11);
   });
 
   it('are neither the short formula nor that of the hydraulic diameter', () => {

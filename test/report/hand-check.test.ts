@@ -1,5 +1,6 @@
 import { expect, test } from 'vitest';
-import { resistancePerLength } from '../../src/physics/duct.ts';
+import { ductForm } from '../../src/physics/duct.ts';
+import { resistancePerLength } from '../../src/physics/duct-state.ts';
 import { isotropicFloorMean } from '../../src/physics/section.ts';
 import { writePdf } from '../../src/report/pdf/document.ts';
 import { drawing } from '../solve/network-from.ts';
@@ -19,7 +20,9 @@ test('the hand check of an isotropic etch says what etching 5 % deeper does, the
   const text = pages.map(({ texts }) => texts.map((one) => one.text).join(' ')).join(' ');
   // the duct that stands for the etch is π·depth/2 wider than its mask
   const widthAt = (depth: number): number => MASK + (Math.PI * depth) / 2;
-  const resistance = powerOf((depth) => resistancePerLength(widthAt(depth), depth, 1e-3));
+  const resistance = powerOf((depth) =>
+    resistancePerLength(ductForm(widthAt(depth), depth), { viscosityPaS: 1e-3 }),
+  );
   const shear = powerOf((depth) => isotropicFloorMean(MASK, depth));
   const area = powerOf((depth) => widthAt(depth) * depth);
   expect(resistance).toBeLessThan(-3);

@@ -1,7 +1,9 @@
 import { describe, expect, test } from 'vitest';
 import { colourScale, legendTicks, PALETTE } from '../../src/report/colour-scale.ts';
-import { drawMap, type MapDrawing, type MapOptions, mapNotes, shortName } from '../../src/report/map.ts';
+import { shortName } from '../../src/report/label-wish.ts';
+import { drawMap, mapNotes } from '../../src/report/map.ts';
 import { type Box, chipGeometry, segmentTouchesBox } from '../../src/report/map-geometry.ts';
+import type { MapDrawing, MapOptions } from '../../src/report/map-types.ts';
 import { displayWidth } from '../../src/report/plain-text.ts';
 import type { ReportedCase } from '../../src/report/report.ts';
 import { DEMOS, demoReport } from './demo.ts';
@@ -192,7 +194,7 @@ describe('a map', () => {
     const drawing = draw(one);
     expect(drawing.scaleBar.text).toBe('10 mm');
     expect(drawing.scaleBar.lengthMm).toBeCloseTo(10 * drawing.scale, 9);
-    const large = draw(one, { scale: 60 });
+    const large = draw(one, { widthMm: 4000, heightMm: 4000 });
     expect(large.scaleBar.lengthMm).toBeLessThan(large.widthMm / 2);
   });
 });

@@ -1,9 +1,9 @@
 import { describe, expect, test } from 'vitest';
 import { writePdf } from '../../src/report/pdf/document.ts';
-import { glyphCoverage } from '../../src/report/pdf/glyph-coverage.ts';
 import type { Report } from '../../src/report/report.ts';
 import { DEMOS, demoReport, reportOf } from './demo.ts';
 import { fonts } from './fonts.ts';
+import { glyphCoverage } from './glyph-coverage.ts';
 import { outside, overlaps, type PdfPage, type PdfText, type ReadPdf, readPdf } from './read-pdf.ts';
 import { sampleCasesReport, sampleReport } from './sample.ts';
 
@@ -125,11 +125,12 @@ describe('the PDF', () => {
     // a 0.5 × 0.12 mm duct: d ln R/d ln depth by central difference of the series, independent of the analytic derivative
     const text = allText((await documentOf('sample')).pdf);
     const exponent = Number(/goes with depth to the power (-[\d.]+)/.exec(text)?.[1]);
-    const { resistancePerLength } = await import('../../src/physics/duct.ts');
+    const { ductForm } = await import('../../src/physics/duct.ts');
+    const { resistancePerLength } = await import('../../src/physics/duct-state.ts');
     const step = 1e-5;
     const difference =
-      (Math.log(resistancePerLength(0.5e-3, 0.12e-3 * (1 + step), 1)) -
-        Math.log(resistancePerLength(0.5e-3, 0.12e-3 * (1 - step), 1))) /
+      (Math.log(resistancePerLength(ductForm(0.5e-3, 0.12e-3 * (1 + step)), { viscosityPaS: 1 })) -
+        Math.log(resistancePerLength(ductForm(0.5e-3, 0.12e-3 * (1 - step)), { viscosityPaS: 1 }))) /
       (Math.log1p(step) - Math.log1p(-step));
     expect(exponent).toBeCloseTo(difference, 3);
   });

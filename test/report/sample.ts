@@ -1,7 +1,9 @@
+import { SectionList } from '../../src/chip/sections.ts';
 import type { Channel, Chip, Fluid, Port, PortRun, Run } from '../../src/chip/types.ts';
 import type { Finding, FindingReport } from '../../src/findings/types.ts';
 import type { Network, NetworkTrace } from '../../src/network/types.ts';
-import { resistancePerLength } from '../../src/physics/duct.ts';
+import { ductForm } from '../../src/physics/duct.ts';
+import { resistancePerLength } from '../../src/physics/duct-state.ts';
 import { waterDensity, waterViscosity } from '../../src/physics/fluid.ts';
 import { tubeResistance } from '../../src/physics/tube.ts';
 import { buildReport, type Report } from '../../src/report/report.ts';
@@ -206,6 +208,7 @@ const WINDOW: ChannelEntry = {
 };
 
 function sampleChip(names: SampleNames, { bare = false }: SampleOptions): Chip {
+  const sections = new SectionList();
   const channel = (ordinal: number, name: string, widthMm: number, points: number[]): Channel => ({
     name,
     drawnName: name,
@@ -218,6 +221,7 @@ function sampleChip(names: SampleNames, { bare = false }: SampleOptions): Chip {
     depthMm: DEPTH_MM,
     depthOrigin: 'run sheet',
     profile: 'rectangle',
+    section: sections.indexOf('rectangle', widthMm, DEPTH_MM),
     linecap: 'butt',
     centrelines: [
       {
@@ -255,6 +259,7 @@ function sampleChip(names: SampleNames, { bare = false }: SampleOptions): Chip {
       channel(3, 'stub', 0.2, [38, 6, 38, 2]),
       channel(4, 'outlet', 0.3, [60, 13, 70, 13]),
     ],
+    sections: sections.forms,
     ports: [port(5, names.feed, 6, 13), port(6, 'waste', 70, 13), port(7, 'spare', 38, 2)],
     edge: {
       name: 'chip-edge',
@@ -366,7 +371,7 @@ function sampleSheet(names: SampleNames, show: ShowUnits): RunSheet {
     show,
     accept: [],
     changedPorts: [],
-    lineOf: () => null,
+    tree: { kind: 'map', entries: new Map(), line: 1 },
   };
 }
 
@@ -459,9 +464,8 @@ function sampleFlow(network: Network, feedPa: number): FlowState {
     REACHES,
     (_, reach) =>
       resistancePerLength(
-        chip.channels[network.reachChannel[reach]].ductWidthMm / 1000,
-        DEPTH_MM / 1000,
-        fluid.viscosityPaS,
+        ductForm(chip.channels[network.reachChannel[reach]].ductWidthMm / 1000, DEPTH_MM / 1000),
+        { viscosityPaS: fluid.viscosityPaS },
       ) *
       (network.reachDuctMm[reach] / 1000),
   );

@@ -1,7 +1,8 @@
 import { describe, expect, test } from 'vitest';
 import { clippedLine } from '../../src/report/clipped-line.ts';
-import { drawMap, type MapOptions, PALE_FILL, PALE_LINE } from '../../src/report/map.ts';
+import { drawMap } from '../../src/report/map.ts';
 import { chipGeometry } from '../../src/report/map-geometry.ts';
+import { type MapOptions, PALE_FILL, PALE_LINE } from '../../src/report/map-types.ts';
 import { writePdf } from '../../src/report/pdf/document.ts';
 import { svgPicture } from '../../src/report/svg.ts';
 import { readSvg } from '../../src/svg/read.ts';

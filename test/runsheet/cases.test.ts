@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { parseRunSheet } from '../../src/runsheet/parse.ts';
+import { lineAt } from '../../src/runsheet/tree.ts';
 import { FULL_SHEET } from './full-sheet.ts';
 
 const parse = (text: string) => parseRunSheet(text, 'c.run.yaml');
@@ -22,9 +23,9 @@ describe('cases', () => {
 
   it('know their own lines', () => {
     const sheet = parse(FULL_SHEET);
-    const line = sheet.lineOf(['cases', 'seed'])!;
+    const line = lineAt(sheet.tree, ['cases', 'seed'])!;
     expect(sheet.cases[0]!.sheet.ports.feed!.line).toBe(line);
-    expect(sheet.cases[0]!.sheet.lineOf(['ports', 'feed', 'flow'])).toBe(line);
+    expect(lineAt(sheet.cases[0]!.sheet.tree, ['ports', 'feed', 'flow'])).toBe(line);
     expect(sheet.cases[0]!.sheet.ports.dose!.line).toBe(sheet.ports.dose!.line);
   });
 

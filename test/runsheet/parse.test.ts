@@ -3,6 +3,7 @@ import { parseDocument } from 'yaml';
 import { InputError } from '../../src/errors.ts';
 import { parseRunSheet } from '../../src/runsheet/parse.ts';
 import { SHEET_KEYS } from '../../src/runsheet/schema.ts';
+import { lineAt } from '../../src/runsheet/tree.ts';
 import { CONTRACT_SHEET, FULL_SHEET } from './full-sheet.ts';
 
 const parse = (text: string) => parseRunSheet(text, 'c.run.yaml');
@@ -118,11 +119,11 @@ describe('parseRunSheet', () => {
 
   it('knows the line of every key', () => {
     const lines = FULL_SHEET.split('\n');
-    expect(lines[sheet.lineOf(['ports', 'dose', 'flow'])! - 1]).toContain('dose:');
-    expect(lines[sheet.lineOf(['targets', 1])! - 1]).toContain('port: waste');
+    expect(lines[lineAt(sheet.tree, ['ports', 'dose', 'flow'])! - 1]).toContain('dose:');
+    expect(lines[lineAt(sheet.tree, ['targets', 1])! - 1]).toContain('port: waste');
     expect(lines[sheet.ports.vent!.line - 1]).toContain('vent:');
-    expect(lines[sheet.lineOf(['cases', 'culture'])! - 1]).toContain('culture:');
-    expect(sheet.lineOf(['ports', 'nobody'])).toBeNull();
+    expect(lines[lineAt(sheet.tree, ['cases', 'culture'])! - 1]).toContain('culture:');
+    expect(lineAt(sheet.tree, ['ports', 'nobody'])).toBeNull();
   });
 
   it('takes an empty file, and a section with nothing in it, as not written', () => {

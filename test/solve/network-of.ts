@@ -1,3 +1,4 @@
+import { SectionList } from '../../src/chip/sections.ts';
 import type { Fluid } from '../../src/chip/types.ts';
 import type { PortCondition, TubingPiece } from '../../src/runsheet/types.ts';
 import type { FlowNetwork, FlowRun } from '../../src/solve/flow-network.ts';
@@ -32,6 +33,7 @@ export function networkOf(
   ports: readonly PortSpec[],
   fluid: Partial<Fluid> = {},
 ): FlowSpec {
+  const sections = new SectionList();
   return {
     run: {
       fluid: {
@@ -47,7 +49,10 @@ export function networkOf(
     },
     network: {
       chip: {
-        channels: reaches.map(({ widthMm = 0.1, depthMm = 0.05 }) => ({ ductWidthMm: widthMm, depthMm })),
+        channels: reaches.map(({ widthMm = 0.1, depthMm = 0.05 }) => ({
+          section: sections.indexOf('rectangle', widthMm, depthMm),
+        })),
+        sections: sections.forms,
       },
       nodeCount:
         1 + Math.max(-1, ...reaches.flatMap(({ from, to }) => [from, to]), ...ports.map(({ node }) => node)),

@@ -1,5 +1,6 @@
 import { describe, expect, test } from 'vitest';
-import { resistancePerLength } from '../../src/physics/duct.ts';
+import { ductForm } from '../../src/physics/duct.ts';
+import { resistancePerLength } from '../../src/physics/duct-state.ts';
 import { nominalResistances } from '../../src/solve/resistances.ts';
 import { networkOf } from './network-of.ts';
 
@@ -12,7 +13,9 @@ describe('nominalResistances', () => {
     const { network, run } = networkOf(reaches, []);
     const { reach, tubing } = nominalResistances(network, run);
     reaches.forEach(({ widthMm, depthMm, lengthMm }, r) => {
-      const exact = resistancePerLength(widthMm / 1000, depthMm / 1000, 1e-3) * (lengthMm / 1000);
+      const exact =
+        resistancePerLength(ductForm(widthMm / 1000, depthMm / 1000), { viscosityPaS: 1e-3 }) *
+        (lengthMm / 1000);
       expect(reach[r] / exact).toBeCloseTo(1, 14);
     });
     expect(tubing).toHaveLength(0);

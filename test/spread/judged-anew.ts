@@ -1,4 +1,5 @@
 import { densityAt, feelsTemperature, viscosityAt } from '../../src/chip/fluid.ts';
+import { SectionList } from '../../src/chip/sections.ts';
 import type { Chip, Fluid, Run } from '../../src/chip/types.ts';
 import { findAll } from '../../src/findings/check.ts';
 import { RULES } from '../../src/findings/rules.ts';
@@ -71,6 +72,7 @@ function deviationOf(variables: readonly Variable[], x: readonly number[]): Devi
 
 /** The chip with one draw's deviations in it. Lengths and joins stay those of the drawing, as the model of the spread has them. */
 function variedChip(chip: Chip, sum: Deviation): Chip {
+  const sections = new SectionList();
   const channels = chip.channels.map((channel, c) => {
     const depthMm =
       channel.depthMm +
@@ -87,9 +89,10 @@ function variedChip(chip: Chip, sum: Deviation): Chip {
           channel.drawnWidthMm / 1000,
         );
     const ductWidthMm = drawnWidthMm + (channel.profile === 'isotropic' ? (Math.PI * depthMm) / 2 : 0);
-    return { ...channel, depthMm, drawnWidthMm, ductWidthMm };
+    const section = sections.indexOf(channel.profile, ductWidthMm, depthMm);
+    return { ...channel, depthMm, drawnWidthMm, ductWidthMm, section };
   });
-  return { ...chip, channels };
+  return { ...chip, channels, sections: sections.forms };
 }
 
 /** The run with the deviations of the same draw in it. */

@@ -6,11 +6,12 @@ import {
   overallShares,
   remarks,
   shareText,
-  spreadCells,
+  spreadColumns,
   toleranceText,
   yieldText,
 } from '../../src/report/spread-rows.ts';
 import { showOf } from '../../src/runsheet/shown.ts';
+import type { Spread, SpreadOutput } from '../../src/spread/types.ts';
 import { oneDuct, outputNamed, spreadOfDrawing } from './spread-of.ts';
 
 const SHEET = `fluid: water
@@ -48,24 +49,29 @@ test('what does not move, and what was not drawn, has no distribution', async ()
 });
 
 test('all numbers of one row are in one unit, and what does not exist is a dash', async () => {
-  const cells = spreadCells(peak, spread, show);
+  const cells = cellsOf(peak, spread);
   expect(cells).toMatchObject({
     what: 'lane',
     quantity: 'floor shear, peak',
     unit: 'Pa',
     asked: '≤ 1.28',
-    notLinear: '',
+    linear: '',
   });
   expect(Number(cells.nominal)).toBeCloseTo(peak.nominal, 3);
   expect(Number(cells.sd)).toBeCloseTo(peak.sd, 4);
   const none = await spreadOfDrawing(oneDuct(), SHEET, { draws: 0 });
-  expect(spreadCells(outputNamed(none, 'feed', 'flow'), none, show)).toMatchObject({
+  expect(cellsOf(outputNamed(none, 'feed', 'flow'), none)).toMatchObject({
     mean: '–',
     sd: '–',
     low: '–',
     kept: '',
   });
 });
+
+function cellsOf(output: SpreadOutput, of: Spread): Record<string, string> {
+  const columns = Object.entries(spreadColumns(of, show));
+  return Object.fromEntries(columns.map(([key, { text }]) => [key, text(output)]));
+}
 
 test('tolerances are shown in their own units with their kind', () => {
   expect(spread.causes.map((cause) => `${cause.key} ${toleranceText(cause, show)}`)).toEqual([

@@ -1,10 +1,10 @@
-import { BODY, type PageContext } from './context.ts';
+import type { PageContext } from './context.ts';
+import { chapter } from './section.ts';
 
 /** What the person who works with the chip must know, whatever the verdict. */
 export function writeCautions({ paper }: PageContext): void {
-  const section = paper.start('portrait', 110);
-  paper.heading(section, 1, 'Cautions');
-  for (const text of CAUTIONS) paper.paragraph(section, text, BODY);
+  const section = chapter(paper, 'Cautions', 'portrait', 110);
+  for (const text of CAUTIONS) section.paragraph(text);
 }
 
 const CAUTIONS: readonly string[] = [

@@ -1,11 +1,20 @@
 import type { Finding } from '../../findings/types.ts';
+import { countText } from '../../findings/words.ts';
 import { formatMm, measureText } from '../../runsheet/shown.ts';
+import { figures, words } from '../columns.ts';
 import { drawPlace, type PlaceDrawing } from '../place.ts';
-import { plural, verdictLine } from '../verdict-line.ts';
+import { verdictLine } from '../verdict-line.ts';
 import { BODY, BODY_BOLD, type PageContext, SMALL } from './context.ts';
-import { inMillimetres, paintLabel, paintScaleBar, paintStrokes, putCentred } from './paint-map.ts';
-import { type Element, lineHeight, POINTS_PER_MM } from './paper.ts';
-import { cells, drawTable } from './table.ts';
+import {
+  inMillimetres,
+  paintEdge,
+  paintLabel,
+  paintScaleBar,
+  paintScaleText,
+  paintStrokes,
+} from './paint-map.ts';
+import { lineHeight, type Paper, POINTS_PER_MM } from './paper.ts';
+import { chapter, type Section } from './section.ts';
 
 /** Findings with a picture each, then as lines of a table, then only counted. */
 const PICTURES = 120;
@@ -16,30 +25,26 @@ const PICTURE_MM = { width: 58, height: 40 } as const;
 export function writeFindings(context: PageContext): void {
   const { paper, one } = context;
   const { findings, notRun } = one.findings;
-  paper.newPage('portrait');
-  const section = paper.section();
-  paper.heading(section, 1, 'Findings');
-  paper.paragraph(
-    section,
+  const section = chapter(paper, 'Findings', 'portrait');
+  section.paragraph(
     `${verdictLine(one.part.verdict, one.part.counts)}. Numbers are those on the map of ${one.name === null ? 'page 1' : 'this case'}; places are in drawing coordinates, mm, y down.`,
     SMALL,
   );
   paper.y += 4;
-  if (findings.length === 0) paper.paragraph(section, 'No finding.', BODY);
+  if (findings.length === 0) section.paragraph('No finding.');
   findings.slice(0, PICTURES).forEach((finding, i) => {
     writeFinding(context, section, finding, i + 1);
   });
   writeFurther(context, section, findings.slice(PICTURES, PICTURES + LINES));
   const left = findings.length - PICTURES - LINES;
-  if (left > 0)
-    paper.paragraph(section, `… and ${plural(left, 'more finding')}, all in the JSON result.`, BODY);
+  if (left > 0) section.paragraph(`… and ${countText(left, 'more finding')}, all in the JSON result.`);
   writeNotRun(context, section, notRun);
 }
 
 const COLOURS = { blocker: '#8f1414', caution: '#7a5200', note: '#1f4e79' } as const;
 const ACCEPTED_COLOUR = '#555555';
 
-function writeFinding(context: PageContext, section: Element, finding: Finding, number: number): void {
+function writeFinding(context: PageContext, section: Section, finding: Finding, number: number): void {
   const { paper, one, geometry, measure, readable } = context;
   const measured =
     finding.measured === null ? null : measureText(one.show, finding.measured, finding.unit, finding.rule);
@@ -67,7 +72,7 @@ function writeFinding(context: PageContext, section: Element, finding: Finding, 
   paper.decoration(() => {
     paper.doc.roundedRect(paper.left, top, 17, 12, 2).fill(colour);
   });
-  paper.tagged(section, 'H2', () => {
+  paper.tagged(section.element, 'H2', () => {
     const badge = { size: 7.5, weight: 'bold', colour: '#ffffff' } as const;
     const text = String(number);
     paper.put(text, paper.left + 8.5 - paper.widthOf(text, badge) / 2, top + 1.3, badge);
@@ -76,17 +81,11 @@ function writeFinding(context: PageContext, section: Element, finding: Finding, 
     paper.put(paper.clip(title, textWidth, style), textX, top + 1.3, style);
   });
   paper.y = top + lineHeight(BODY_BOLD) + 3;
-  for (const text of paragraphs) paper.paragraph(section, text, BODY, { x: textX, width: textWidth });
+  for (const text of paragraphs) section.paragraph(text, BODY, { x: textX, width: textWidth });
   const end = paper.y;
   if (picture !== null && end > top) {
-    paintPlace(
-      context,
-      section,
-      picture,
-      paper.right - PICTURE_MM.width * POINTS_PER_MM,
-      top,
-      `Close-up of the place of finding ${number}`,
-    );
+    const left = paper.right - PICTURE_MM.width * POINTS_PER_MM;
+    section.figure(`Close-up of the place of finding ${number}`, () => paintPlace(paper, picture, left, top));
   }
   paper.y = Math.max(end, end > top ? top + height : end) + 6;
 }
@@ -113,47 +112,22 @@ function findingTexts({ one }: PageContext, finding: Finding, measured: string |
   ].filter((text) => text !== '');
 }
 
-function paintPlace(
-  { paper }: PageContext,
-  section: Element,
-  picture: PlaceDrawing,
-  x: number,
-  y: number,
-  alt: string,
-): void {
+function paintPlace(paper: Paper, picture: PlaceDrawing, x: number, y: number): void {
   const { doc } = paper;
-  paper.tagged(
-    section,
-    'Figure',
-    () => {
-      inMillimetres(paper, x, y, () => {
-        doc.save();
-        doc.rect(0, 0, picture.widthMm, picture.viewHeightMm).clip();
-        for (const ring of picture.edge) {
-          doc.moveTo(ring[0], ring[1]);
-          for (let i = 2; i < ring.length; i += 2) doc.lineTo(ring[i], ring[i + 1]);
-          doc.lineWidth(0.3).strokeColor('#606060').stroke();
-        }
-        paintStrokes(paper, picture.strokes);
-        for (const hole of picture.holes)
-          doc.circle(hole.x, hole.y, hole.radiusMm).lineWidth(0.3).fillAndStroke('#ffffff', '#202020');
-        paintMark(doc, picture);
-        doc.restore();
-        paintScaleBar(paper, picture.scaleBar);
-        doc.rect(0, 0, picture.widthMm, picture.viewHeightMm).lineWidth(0.2).strokeColor('#888888').stroke();
-      });
-      for (const label of picture.labels) paintLabel(paper, label, x, y);
-      const { scaleBar } = picture;
-      putCentred(
-        paper,
-        scaleBar.text,
-        x + (scaleBar.x + scaleBar.lengthMm / 2) * POINTS_PER_MM,
-        y + (scaleBar.y + 0.7) * POINTS_PER_MM,
-        scaleBar.sizeMm,
-      );
-    },
-    { alt },
-  );
+  inMillimetres(paper, x, y, () => {
+    doc.save();
+    doc.rect(0, 0, picture.widthMm, picture.viewHeightMm).clip();
+    paintEdge(paper, picture, 0.3);
+    paintStrokes(paper, picture.strokes);
+    for (const hole of picture.holes)
+      doc.circle(hole.x, hole.y, hole.radiusMm).lineWidth(0.3).fillAndStroke('#ffffff', '#202020');
+    paintMark(doc, picture);
+    doc.restore();
+    paintScaleBar(paper, picture.scaleBar);
+    doc.rect(0, 0, picture.widthMm, picture.viewHeightMm).lineWidth(0.2).strokeColor('#888888').stroke();
+  });
+  for (const label of picture.labels) paintLabel(paper, label, x, y);
+  paintScaleText(paper, picture.scaleBar, x, y, 0.7);
 }
 
 const MARK_COLOUR = '#b00020';
@@ -182,51 +156,33 @@ function paintMark(doc: PDFKit.PDFDocument, { mark, cross: [x, y] }: PlaceDrawin
   doc.lineWidth(0.35).strokeColor(MARK_COLOUR).stroke();
 }
 
-function writeFurther({ paper, one }: PageContext, section: Element, findings: readonly Finding[]): void {
+function writeFurther({ one }: PageContext, section: Section, findings: readonly Finding[]): void {
   if (findings.length === 0) return;
-  paper.heading(section, 2, 'Further findings');
-  drawTable(
-    paper,
-    section,
+  section.heading(2, 'Further findings');
+  section.table(
+    findings.map((finding, i) => ({ number: PICTURES + i + 1, finding })),
     [
-      { head: 'no.', align: 'right', width: 'fit' },
-      { head: 'severity', align: 'left', width: 'fit' },
-      { head: 'rule', align: 'left', width: 'fit' },
-      { head: 'x', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'y', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'measured', align: 'right', width: 'fit' },
-      { head: 'what', align: 'left', width: 'share' },
-    ],
-    findings.map((finding, i) =>
-      cells(
-        String(PICTURES + i + 1),
-        finding.accepted === null ? finding.severity : 'accepted',
-        finding.rule,
-        finding.xMm === null ? '–' : formatMm(finding.xMm),
-        finding.yMm === null ? '–' : formatMm(finding.yMm),
-        measureText(one.show, finding.measured, finding.unit, finding.rule),
-        finding.message,
+      figures('no.', ({ number }) => String(number)),
+      words('severity', ({ finding }) => (finding.accepted === null ? finding.severity : 'accepted')),
+      words('rule', ({ finding }) => finding.rule),
+      figures('x', ({ finding: { xMm } }) => (xMm === null ? '–' : formatMm(xMm)), 'mm'),
+      figures('y', ({ finding: { yMm } }) => (yMm === null ? '–' : formatMm(yMm)), 'mm'),
+      figures('measured', ({ finding: { measured, unit, rule } }) =>
+        measureText(one.show, measured, unit, rule),
       ),
-    ),
+      words('what', ({ finding }) => finding.message, 'share'),
+    ],
     { size: 6.5 },
   );
 }
 
 function writeNotRun(
   { paper }: PageContext,
-  section: Element,
+  section: Section,
   notRun: readonly { readonly rule: string; readonly why: string }[],
 ): void {
   if (notRun.length === 0) return;
   paper.y += 4;
-  paper.heading(section, 2, 'Rules not run');
-  drawTable(
-    paper,
-    section,
-    [
-      { head: 'rule', align: 'left', width: 'fit' },
-      { head: 'why', align: 'left', width: 'wrap' },
-    ],
-    notRun.map(({ rule, why }) => cells(rule, why)),
-  );
+  section.heading(2, 'Rules not run');
+  section.table(notRun, [words('rule', ({ rule }) => rule), words('why', ({ why }) => why, 'wrap')]);
 }

@@ -1,47 +1,46 @@
-import { cleanText } from '../plain-text.ts';
-import { foundCells } from '../pump-rows.ts';
+import type { Show } from '../../runsheet/shown.ts';
+import type { PortCondition } from '../../runsheet/types.ts';
+import type { FoundTarget } from '../../solve/targets.ts';
+import { type Column, words } from '../columns.ts';
+import { fine, portName } from '../pump-rows.ts';
 import type { ReportedCase } from '../report.ts';
 import { BODY_BOLD, SMALL } from './context.ts';
-import type { Element, Paper } from './paper.ts';
-import { cells, drawTable } from './table.ts';
+import type { Section } from './section.ts';
 
 /** Settings told in the box; all are on the page of the settings. */
 const MOST_ROWS = 6;
 const INSET = 5;
 
+interface FoundIn {
+  readonly one: ReportedCase;
+  readonly target: FoundTarget;
+}
+
 /** Says in a box that these numbers are at settings that were found, the run sheet's beside them. Nothing for other commands. */
-export function writeFoundBox(paper: Paper, section: Element, cases: readonly ReportedCase[]): void {
-  const rows = cases.flatMap((one) =>
-    (one.pump?.targets ?? []).map((target) => {
-      const { port, given, found } = foundCells(one, target);
-      return [
-        ...(cases.length > 1 ? [cleanText(one.name ?? '')] : []),
-        cleanText(port),
-        given,
-        found,
-      ] as const;
-    }),
-  );
+export function writeFoundBox(section: Section, cases: readonly ReportedCase[]): void {
+  const { paper } = section;
+  const rows = cases.flatMap((one) => (one.pump?.targets ?? []).map((target) => ({ one, target })));
   if (rows.length === 0) return;
   const top = paper.y + 2;
   const inner = { x: paper.left + INSET, width: paper.width - 2 * INSET };
   paper.y = top + INSET;
-  paper.paragraph(section, HEAD, BODY_BOLD, inner);
-  drawTable(
-    paper,
-    section,
-    [
-      ...(cases.length > 1 ? [{ head: 'case', align: 'left', width: 'share' } as const] : []),
-      { head: 'port', align: 'left', width: 'share' },
-      { head: 'in the run sheet', align: 'left', width: 'fit' },
-      { head: 'found, and used here', align: 'left', width: 'fit' },
-    ],
-    rows.slice(0, MOST_ROWS).map((row) => cells(...row)),
-    { ...inner, size: 7.5 },
-  );
+  section.paragraph(HEAD, BODY_BOLD, inner);
+  const columns: readonly Column<FoundIn>[] = [
+    words('case', ({ one }) => one.name ?? '', 'share'),
+    words('port', ({ one, target }) => portName(one.network, target), 'share'),
+    words('in the run sheet', ({ one, target }) => conditionText(target.given, one.show)),
+    words('found, and used here', ({ one: { show }, target: { response } }) =>
+      [fine(show, 'pressure', response.supplyPressurePa.at), fine(show, 'flow', response.flowM3s.at)].join(
+        ', or ',
+      ),
+    ),
+  ];
+  section.table(rows.slice(0, MOST_ROWS), cases.length > 1 ? columns : columns.slice(1), {
+    ...inner,
+    size: 7.5,
+  });
   const more = rows.length - MOST_ROWS;
-  if (more > 0)
-    paper.paragraph(section, `… and ${more} more, on the page of the pump settings.`, SMALL, inner);
+  if (more > 0) section.paragraph(`… and ${more} more, on the page of the pump settings.`, SMALL, inner);
   paper.decoration(() => {
     paper.doc
       .rect(paper.left, top, paper.width, paper.y - top)
@@ -55,3 +54,21 @@ export function writeFoundBox(paper: Paper, section: Element, cases: readonly Re
 const EDGE = '#8a5a00';
 const HEAD =
   'These settings were found, not given: everything in this document is computed at them, and not at the values of the run sheet.';
+
+function conditionText(condition: PortCondition, show: Show): string {
+  switch (condition.kind) {
+    case 'pressure':
+      return fine(show, 'pressure', condition.pressurePa);
+    case 'flow':
+      return fine(show, 'flow', condition.flowM3s);
+    case 'head':
+      return `head ${fine(show, 'length', condition.headM)}`;
+    case 'unset':
+      return 'not set';
+    case 'open':
+    case 'sealed':
+      return condition.kind;
+    default:
+      return condition satisfies never;
+  }
+}

@@ -1,44 +1,38 @@
 import { formatMm } from '../../runsheet/shown.ts';
-import { BODY, type PageContext, SMALL } from './context.ts';
-import { cells, drawTable } from './table.ts';
+import { words } from '../columns.ts';
+import { quantityColumns } from '../quantities.ts';
+import { portQuantity } from '../result-schema.ts';
+import { type PageContext, SMALL } from './context.ts';
+import { chapter } from './section.ts';
 
 /** Where to drill or punch: from the lower left corner of the chip edge, and in drawing coordinates. */
 export function writeHoles({ paper, one, geometry }: PageContext): void {
   const { chip } = one.network;
-  const section = paper.start('portrait', 120);
-  paper.heading(section, 1, 'Holes');
+  const section = chapter(paper, 'Holes', 'portrait', 120);
   if (chip.ports.length === 0) {
-    paper.paragraph(section, 'The layout has no holes.', BODY);
+    section.paragraph('The layout has no holes.');
     return;
   }
   const corner = lowerLeft(chip.edge?.rings ?? [], geometry.bounds);
-  paper.paragraph(
-    section,
+  section.paragraph(
     `Seen from the channel side, as drawn. x to the right and y up from the lower left corner of ${chip.edge === null ? 'all that is drawn (there is no chip edge)' : `the rectangle round ${chip.edge.name}`}, ` +
       `which is ${formatMm(corner.x)}, ${formatMm(corner.y)} mm in the drawing; beside them the drawing's own coordinates, y down. Whoever works from the other side mirrors x.`,
     SMALL,
   );
-  drawTable(
-    paper,
-    section,
+  const { ports } = one.part;
+  const columns = quantityColumns(portQuantity, ports, one.show);
+  section.table(
+    ports,
     [
-      { head: 'hole', align: 'left', width: 'share' },
-      { head: 'x from corner', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'y from corner', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'diameter', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'x in drawing', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'y in drawing', unit: 'mm', align: 'right', width: 'fit' },
-    ],
-    one.part.ports.map((port) =>
-      cells(
-        port.name,
-        formatMm(port.x_mm - corner.x),
-        formatMm(corner.y - port.y_mm),
-        formatMm(port.diameter_mm),
-        formatMm(port.x_mm),
-        formatMm(port.y_mm),
+      words('hole', ({ name }) => name, 'share'),
+      ...columns(
+        { key: 'x_mm', head: 'x from corner', value: ({ x_mm }) => x_mm - corner.x },
+        { key: 'y_mm', head: 'y from corner', value: ({ y_mm }) => corner.y - y_mm },
+        'diameter_mm',
+        'x_mm',
+        'y_mm',
       ),
-    ),
+    ],
     { size: 7.5 },
   );
 }

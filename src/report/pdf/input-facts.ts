@@ -1,12 +1,8 @@
 import type { Chip, Run } from '../../chip/types.ts';
-import { unreadText } from '../../findings/words.ts';
+import { countText, unreadText } from '../../findings/words.ts';
 import { formatMm, formatNumber } from '../../runsheet/shown.ts';
 import { jointsText } from '../joints-text.ts';
-import { plural } from '../verdict-line.ts';
 import { depthFrom, isoDate, type PageContext } from './context.ts';
-
-/** How writeFacts sets them, the same on all pages. */
-export const FACTS = { keyWidth: 62, size: 6.5 } as const;
 
 /** What went in: files with their checksums, fluid, depths, size, joints, and what was not read. */
 export function inputFacts({ report, one, date }: PageContext): readonly (readonly [string, string])[] {
@@ -52,7 +48,7 @@ function depthText({ layers }: Chip): string {
   });
   const more = layers.length - listed.length;
   return (
-    [...listed, ...(more > 0 ? [`and ${plural(more, 'more layer')}, listed with the model`] : [])].join(
+    [...listed, ...(more > 0 ? [`and ${countText(more, 'more layer')}, listed with the model`] : [])].join(
       '; ',
     ) || 'no layer'
   );

@@ -1,16 +1,16 @@
-import { drawMap, mapNotes, QUANTITY_TITLES } from '../map.ts';
+import { drawMap } from '../map.ts';
+import { MAP_QUANTITIES } from '../map-quantities.ts';
 import { type PageContext, SMALL } from './context.ts';
-import { paintMap } from './paint-map.ts';
+import { writeMap } from './paint-map.ts';
 import { POINTS_PER_MM } from './paper.ts';
+import { chapter } from './section.ts';
 
 const TEXT_POINTS = 44;
 
 /** Maps of wall shear, flow and residence time, as many on a page as fit: three of a wide chip, one of a tall one. */
 export function writeMaps({ paper, one, geometry, measure, readable }: PageContext): void {
-  paper.newPage('portrait');
-  const section = paper.section();
-  paper.heading(section, 1, 'Maps');
-  paper.paragraph(section, "Numbers beside names are in the legend's unit; all are in the tables.", SMALL);
+  const section = chapter(paper, 'Maps', 'portrait');
+  section.paragraph("Numbers beside names are in the legend's unit; all are in the tables.", SMALL);
   const heightMm = mapHeightMm(paper.bottom - paper.y, paper.width, geometry.bounds);
   for (const quantity of ['shear', 'flow', 'residence'] as const) {
     const drawing = drawMap(one, geometry, {
@@ -23,20 +23,14 @@ export function writeMaps({ paper, one, geometry, measure, readable }: PageConte
       findingNumbers: false,
       reachLabels: true,
     });
-    const height = drawing.heightMm * POINTS_PER_MM;
-    paper.need(height + TEXT_POINTS - 2);
-    const title = QUANTITY_TITLES[quantity];
-    paper.heading(section, 2, `${title[0].toUpperCase()}${title.slice(1)}`);
-    paintMap(
-      paper,
+    paper.need(drawing.heightMm * POINTS_PER_MM + TEXT_POINTS - 2);
+    const { title } = MAP_QUANTITIES[quantity];
+    section.heading(2, `${title[0].toUpperCase()}${title.slice(1)}`);
+    writeMap(
       section,
       drawing,
-      paper.left,
-      paper.y,
       `The chip as drawn, coloured by ${title}; the numbers are in the table of reaches.`,
     );
-    paper.y += height;
-    paper.paragraph(section, mapNotes(drawing), SMALL);
     paper.y += 3;
   }
 }

@@ -1,35 +1,33 @@
 import { LIMIT_SLACK, minWallM } from '../../chip/limits.ts';
 import type { Chip, Limits, Sourced } from '../../chip/types.ts';
 import { formatMm, formatNumber } from '../../runsheet/shown.ts';
+import { figures, words } from '../columns.ts';
 import { jointsText } from '../joints-text.ts';
+import { known } from '../known.ts';
 import type { ReportedCase } from '../report.ts';
-import { BODY, depthFrom, type PageContext } from './context.ts';
-import { jointText } from './front-page.ts';
-import type { Element, Paper } from './paper.ts';
-import { cells, drawTable, type TableRow } from './table.ts';
+import { depthFrom, type PageContext } from './context.ts';
+import { jointText } from './port-columns.ts';
+import { chapter, type Section } from './section.ts';
 
 /** The model in words, its formulas with their sources, and the depths and limits in force with where each came from. */
 export function writeModel({ paper, one }: PageContext): void {
   const { chip } = one.network;
-  const section = paper.start('portrait', 500);
-  paper.heading(section, 1, 'Model');
-  for (const text of modelTexts(chip)) paper.paragraph(section, text, BODY);
+  const section = chapter(paper, 'Model', 'portrait', 500);
+  for (const text of modelTexts(chip)) section.paragraph(text);
   paper.y += 4;
-  paper.heading(section, 2, 'Formulas and sources');
-  drawTable(
-    paper,
-    section,
+  section.heading(2, 'Formulas and sources');
+  section.table(
+    FORMULAS,
     [
-      { head: 'what', align: 'left', width: 'fit' },
-      { head: 'formula', align: 'left', width: 'wrap' },
-      { head: 'source', align: 'left', width: 'wrap' },
+      words('what', ([what]) => what),
+      words('formula', ([, formula]) => formula, 'wrap'),
+      words('source', ([, , source]) => source, 'wrap'),
     ],
-    FORMULAS.map((texts) => cells(...texts)),
     { size: 6.8 },
   );
-  writeJoints(paper, section, one);
-  writeLayers(paper, section, chip);
-  writeLimits(paper, section, chip, one.run.limits);
+  writeJoints(section, one);
+  writeLayers(section, chip);
+  writeLimits(section, chip, one.run.limits);
 }
 
 function modelTexts(chip: Chip): readonly string[] {
@@ -92,38 +90,29 @@ const FORMULAS: readonly (readonly [string, string, string])[] = [
 ];
 
 /** Joints by kind, and what they come to beside plain centrelines. */
-function writeJoints(paper: Paper, section: Element, one: ReportedCase): void {
+function writeJoints(section: Section, one: ReportedCase): void {
   const { network } = one;
   if (network.joints.length === 0) return;
-  paper.heading(section, 2, 'Joints');
-  drawTable(
-    paper,
-    section,
-    [
-      { head: 'kind', align: 'left', width: 'share' },
-      { head: 'number', align: 'right', width: 'fit' },
-      { head: 'together they add', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'one could be off by ±', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'first at x', unit: 'mm', align: 'right', width: 'fit' },
-      { head: 'y', unit: 'mm', align: 'right', width: 'fit' },
-    ],
-    network.joints.map(({ kind, count, addedMm, boundMm, xMm, yMm }) =>
-      cells(kind, String(count), lengthText(addedMm), lengthText(boundMm), formatMm(xMm), formatMm(yMm)),
-    ),
-  );
+  section.heading(2, 'Joints');
+  section.table(network.joints, [
+    words('kind', ({ kind }) => kind, 'share'),
+    figures('number', ({ count }) => String(count)),
+    figures('together they add', ({ addedMm }) => lengthText(addedMm), 'mm'),
+    figures('one could be off by ±', ({ boundMm }) => lengthText(boundMm), 'mm'),
+    figures('first at x', ({ xMm }) => formatMm(xMm), 'mm'),
+    figures('y', ({ yMm }) => formatMm(yMm), 'mm'),
+  ]);
   const joints = jointsText(network.joints);
-  if (joints !== null && network.chip.joints === 'resolved') paper.paragraph(section, `${joints}.`, BODY);
+  if (joints !== null && network.chip.joints === 'resolved') section.paragraph(`${joints}.`);
   const sum = (lengths: Float64Array): number => lengths.reduce((total, length) => total + length, 0);
   const centreline = lengthText(sum(network.reachCentrelineMm));
   const counted = lengthText(sum(network.reachDuctMm));
-  paper.paragraph(
-    section,
+  section.paragraph(
     network.chip.joints === 'resolved'
       ? `All reaches together: ${counted} mm of duct as counted here, ${centreline} mm by centrelines alone.`
       : `The numbers of this document count centrelines: ${counted} mm of duct in all. With joints: resolved the lengths above would be added.`,
-    BODY,
   );
-  writeCentrelineFlows(paper, section, one);
+  writeCentrelineFlows(section, one);
 }
 
 /** Without a depth there may be no length either. */
@@ -134,73 +123,43 @@ function lengthText(mm: number): string {
 const PORT_BOUND = 60;
 
 /** What centreline counting would have said of each port's flow, beside what is said here. */
-function writeCentrelineFlows(
-  paper: Paper,
-  section: Element,
-  { network, part, show, centrelineFlow }: ReportedCase,
-): void {
+function writeCentrelineFlows(section: Section, { network, part, show, centrelineFlow }: ReportedCase): void {
   if (centrelineFlow === null || network.chip.joints !== 'resolved') return;
   const flows = centrelineFlow().portFlow;
   const ports = part.ports.slice(0, PORT_BOUND);
-  drawTable(
-    paper,
-    section,
+  section.table(
+    ports.map((port, i) => ({ port, centreline: flows[i] })),
     [
-      { head: 'port', align: 'left', width: 'share' },
-      { head: 'flow into chip, as counted', align: 'right', width: 'fit' },
-      { head: 'by centrelines alone', align: 'right', width: 'fit' },
-      { head: 'joints not resolved could move by ±', align: 'right', width: 'fit' },
+      words('port', ({ port }) => port.name, 'share'),
+      figures('flow into chip, as counted', ({ port }) => show.text('flow', port.flow_m3_s)),
+      figures('by centrelines alone', ({ centreline }) => show.text('flow', known(centreline))),
+      figures('joints not resolved could move by ±', ({ port }) => jointText(port)),
     ],
-    ports.map((port, i) =>
-      cells(
-        port.name,
-        show.text('flow', port.flow_m3_s),
-        Number.isFinite(flows[i]) ? show.text('flow', flows[i]) : '–',
-        jointText(port),
-      ),
-    ),
   );
-  if (part.ports.length > ports.length) paper.paragraph(section, `… of ${part.ports.length} ports.`, BODY);
+  if (part.ports.length > ports.length) section.paragraph(`… of ${part.ports.length} ports.`);
 }
 
 const LAYER_BOUND = 500;
 
-function writeLayers(paper: Paper, section: Element, chip: Chip): void {
+function writeLayers(section: Section, chip: Chip): void {
   if (chip.layers.length === 0) return;
-  paper.heading(section, 2, 'Layers');
-  drawTable(
-    paper,
-    section,
-    [
-      { head: 'layer', align: 'left', width: 'share' },
-      { head: 'plane', align: 'left', width: 'share' },
-      { head: 'depth', unit: 'µm', align: 'right', width: 'fit' },
-      { head: 'depth from', align: 'left', width: 'fit' },
-      { head: 'profile', align: 'left', width: 'fit' },
-    ],
-    chip.layers
-      .slice(0, LAYER_BOUND)
-      .map((layer) =>
-        cells(
-          layer.name === '' ? '(none)' : layer.name,
-          chip.planes[layer.plane] ?? '',
-          Number.isNaN(layer.depthM) ? '–' : formatNumber(layer.depthM * 1e6),
-          Number.isNaN(layer.depthM) ? '–' : depthFrom(layer),
-          layer.profile,
-        ),
-      ),
-  );
+  section.heading(2, 'Layers');
+  section.table(chip.layers.slice(0, LAYER_BOUND), [
+    words('layer', ({ name }) => (name === '' ? '(none)' : name), 'share'),
+    words('plane', ({ plane }) => chip.planes[plane] ?? '', 'share'),
+    figures('depth', ({ depthM }) => (Number.isNaN(depthM) ? '–' : formatNumber(depthM * 1e6)), 'µm'),
+    words('depth from', (layer) => (Number.isNaN(layer.depthM) ? '–' : depthFrom(layer))),
+    words('profile', ({ profile }) => profile),
+  ]);
 }
 
-function writeLimits(paper: Paper, section: Element, chip: Chip, limits: Limits): void {
+function writeLimits(section: Section, chip: Chip, limits: Limits): void {
   const { process, layers } = chip;
-  paper.heading(section, 2, 'Limits');
-  paper.paragraph(
-    section,
+  section.heading(2, 'Limits');
+  section.paragraph(
     process === null
       ? 'No process is named, so only limits of the run sheet and the defaults apply.'
       : `Process: ${process}.`,
-    BODY,
   );
   const micrometres = (metres: number): string => `${formatNumber(metres * 1e6)} µm`;
   const millimetres = (metres: number): string => `${formatNumber(metres * 1e3)} mm`;
@@ -208,7 +167,7 @@ function writeLimits(paper: Paper, section: Element, chip: Chip, limits: Limits)
   const depths = [
     ...new Set(layers.map(({ depthM }) => depthM).filter((depthM) => !Number.isNaN(depthM))),
   ].slice(0, 12);
-  const rows: TableRow[] = [
+  const rows = [
     limitRow('narrowest channel', limits.minWidthM, micrometres),
     ...depths.map((depthM) =>
       limitRow(`thinnest wall, depth ${micrometres(depthM)}`, minWallM(chip, depthM), micrometres),
@@ -233,25 +192,20 @@ function writeLimits(paper: Paper, section: Element, chip: Chip, limits: Limits)
     ),
     limitRow('stiffness', limits.stiffnessPa, (pascals) => `${formatNumber(pascals / 1e6)} MPa`),
   ];
-  drawTable(
-    paper,
-    section,
-    [
-      { head: 'limit', align: 'left', width: 'fit' },
-      { head: 'value', align: 'left', width: 'fit' },
-      { head: 'from', align: 'left', width: 'share' },
-    ],
-    rows,
-  );
-  paper.paragraph(
-    section,
+  section.table(rows, [
+    words('limit', ([what]) => what),
+    words('value', ([, value]) => value),
+    words('from', ([, , origin]) => origin, 'share'),
+  ]);
+  section.paragraph(
     `The relative slack of every comparison is ${LIMIT_SLACK.toExponential()}, in the drawing's favour.`,
-    BODY,
   );
 }
 
-function limitRow<T>(what: string, limit: Sourced<T> | null, text: (value: T) => string): TableRow {
-  return limit === null
-    ? cells(what, 'none', 'not given: not checked')
-    : cells(what, text(limit.value), limit.origin);
+function limitRow<T>(
+  what: string,
+  limit: Sourced<T> | null,
+  text: (value: T) => string,
+): readonly [string, string, string] {
+  return limit === null ? [what, 'none', 'not given: not checked'] : [what, text(limit.value), limit.origin];
 }

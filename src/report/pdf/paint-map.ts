@@ -1,38 +1,43 @@
-import { type MapDrawing, type MapLabel, type MapStroke, PALE_FILL, PALE_LINE } from '../map.ts';
-import { type Element, type Paper, POINTS_PER_MM } from './paper.ts';
+import { mapNotes } from '../map.ts';
+import {
+  type MapDrawing,
+  type MapLabel,
+  type MapStroke,
+  PALE_FILL,
+  PALE_LINE,
+  type Picture,
+  type ScaleBar,
+} from '../map-types.ts';
+import { SMALL } from './context.ts';
+import { type Paper, POINTS_PER_MM } from './paper.ts';
+import type { Section } from './section.ts';
 
-/** Paints a map with its upper left corner at x, y (points) as a tagged figure; its texts were measured in the paper's font. */
-export function paintMap(
-  paper: Paper,
-  parent: Element,
-  drawing: MapDrawing,
-  x: number,
-  y: number,
-  alt: string,
-): void {
-  paper.tagged(
-    parent,
-    'Figure',
-    () => {
-      inMillimetres(paper, x, y, () => {
-        paintUnread(paper, drawing);
-        paintEdge(paper, drawing);
-        paintStrokes(paper, drawing.ground);
-        paintStrokes(
-          paper,
-          drawing.reaches.flatMap(({ strokes }) => strokes),
-        );
-        paintObstacles(paper, drawing);
-        paintHoles(paper, drawing);
-        paintMarkers(paper, drawing);
-        paintLegend(paper, drawing);
-        paintScaleBar(paper, drawing.scaleBar);
-      });
-      for (const label of drawing.labels) paintLabel(paper, label, x, y);
-      paintTexts(paper, drawing, x, y);
-    },
-    { alt },
-  );
+/** Paints a map over the page's width as a tagged figure, what must be said of it below; its texts were measured in the paper's font. */
+export function writeMap(section: Section, drawing: MapDrawing, alt: string, more = ''): void {
+  const { paper } = section;
+  const { left: x, y } = paper;
+  const paint = (): void => {
+    inMillimetres(paper, x, y, () => {
+      paintUnread(paper, drawing);
+      paintEdge(paper, drawing, 0.2);
+      paintStrokes(paper, drawing.ground);
+      paintStrokes(
+        paper,
+        drawing.reaches.flatMap(({ strokes }) => strokes),
+      );
+      paintObstacles(paper, drawing);
+      paintHoles(paper, drawing);
+      paintMarkers(paper, drawing);
+      paintLegend(paper, drawing);
+      paintScaleBar(paper, drawing.scaleBar);
+    });
+    for (const label of drawing.labels) paintLabel(paper, label, x, y);
+    paintScaleText(paper, drawing.scaleBar, x, y, 0.8);
+    paintLegendTexts(paper, drawing, x, y);
+  };
+  section.figure(alt, paint);
+  paper.y += drawing.heightMm * POINTS_PER_MM;
+  section.paragraph(`${mapNotes(drawing)}${more}`, SMALL);
 }
 
 /** Runs `paint` with the unit 1 mm and the origin at x, y. */
@@ -43,10 +48,10 @@ export function inMillimetres(paper: Paper, x: number, y: number, paint: () => v
   paper.doc.restore();
 }
 
-function paintEdge({ doc }: Paper, { edge }: Pick<MapDrawing, 'edge'>): void {
+export function paintEdge({ doc }: Paper, { edge }: Picture, lineWidth: number): void {
   for (const ring of edge) {
     trace(doc, ring);
-    doc.lineWidth(0.2).strokeColor('#606060').stroke();
+    doc.lineWidth(lineWidth).strokeColor('#606060').stroke();
   }
 }
 
@@ -137,7 +142,7 @@ function paintLegend({ doc }: Paper, { legend }: MapDrawing): void {
   doc.lineWidth(0.15).strokeColor('#000000').stroke();
 }
 
-export function paintScaleBar({ doc }: Paper, { x, y, lengthMm }: MapDrawing['scaleBar']): void {
+export function paintScaleBar({ doc }: Paper, { x, y, lengthMm }: ScaleBar): void {
   doc
     .moveTo(x, y - 0.6)
     .lineTo(x, y + 0.6)
@@ -147,27 +152,25 @@ export function paintScaleBar({ doc }: Paper, { x, y, lengthMm }: MapDrawing['sc
   doc.lineWidth(0.35).strokeColor('#000000').stroke();
 }
 
-function paintTexts(paper: Paper, { legend, scaleBar }: MapDrawing, x: number, y: number): void {
-  const at = (xMm: number, yMm: number): readonly [number, number] => [
-    x + xMm * POINTS_PER_MM,
-    y + yMm * POINTS_PER_MM,
-  ];
-  putCentred(
-    paper,
-    scaleBar.text,
-    ...at(scaleBar.x + scaleBar.lengthMm / 2, scaleBar.y + 0.8),
-    scaleBar.sizeMm,
-  );
-  if (legend === null) return;
-  const style = { size: legend.sizeMm * POINTS_PER_MM };
-  const title = [legend.title, legend.grey].filter((part) => part !== null).join('; ');
-  paper.put(title, ...at(legend.titleAt[0], legend.titleAt[1] - 0.1 * legend.sizeMm), style);
-  for (const tick of legend.ticks) {
-    putCentred(paper, tick.text, ...at(tick.x, legend.bar.y + legend.bar.height + 0.7), legend.sizeMm);
-  }
+/** The length of a scale bar, so far below it. */
+export function paintScaleText(
+  paper: Paper,
+  { x: left, y: top, lengthMm, text, sizeMm }: ScaleBar,
+  x: number,
+  y: number,
+  belowMm: number,
+): void {
+  const centre = x + (left + lengthMm / 2) * POINTS_PER_MM;
+  paper.putCentred(text, centre, y + (top + belowMm) * POINTS_PER_MM, { size: sizeMm * POINTS_PER_MM });
 }
 
-export function putCentred(paper: Paper, text: string, x: number, y: number, sizeMm: number): void {
+function paintLegendTexts(paper: Paper, { legend }: MapDrawing, x: number, y: number): void {
+  if (legend === null) return;
+  const { bar, sizeMm, titleAt } = legend;
   const style = { size: sizeMm * POINTS_PER_MM };
-  paper.put(text, x - paper.widthOf(text, style) / 2, y, style);
+  const title = [legend.title, legend.grey].filter((part) => part !== null).join('; ');
+  const [left, top] = [titleAt[0], titleAt[1] - 0.1 * sizeMm];
+  paper.put(title, x + left * POINTS_PER_MM, y + top * POINTS_PER_MM, style);
+  const below = y + (bar.y + bar.height + 0.7) * POINTS_PER_MM;
+  for (const tick of legend.ticks) paper.putCentred(tick.text, x + tick.x * POINTS_PER_MM, below, style);
 }

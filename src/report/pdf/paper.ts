@@ -1,6 +1,6 @@
 import PDFDocument from 'pdfkit';
 import { cleanText, wrapMeasured } from '../plain-text.ts';
-import { glyphCoverage } from './glyph-coverage.ts';
+import { type EmbeddedFont, embeddedFont } from './embedded-font.ts';
 import { layOutPlainly } from './plain-layout.ts';
 import { visualChunks } from './visual-order.ts';
 
@@ -38,13 +38,18 @@ export class Paper {
   /** Next free height on the page, from the top. */
   y = MARGIN;
   private readonly size: readonly [number, number];
-  private readonly has: Record<Weight, (codePoint: number) => boolean>;
+  /** The fonts, and how they show each character met so far: the search through a font's map takes its time. */
+  private readonly embedded: Record<
+    Weight,
+    { readonly font: EmbeddedFont['font']; readonly shown: Map<string, string> }
+  >;
   private readonly root: Element;
   private readonly chunks: Uint8Array[] = [];
   /** Widths of texts at size 1, by weight. */
   private readonly plainWidths = new Map<string, number>();
   private readonly boldWidths = new Map<string, number>();
-  private orientation: 'portrait' | 'landscape' = 'portrait';
+  /** Of the page that is written on; none yet. */
+  private orientation: 'portrait' | 'landscape' | null = null;
 
   constructor(options: {
     readonly fonts: Fonts;
@@ -71,11 +76,11 @@ export class Paper {
     // pdfkit's own type wants a Buffer-like source; a Uint8Array is what it reads
     this.doc.registerFont('regular', fonts.regular as PDFKit.Mixins.PDFFontSource);
     this.doc.registerFont('bold', fonts.bold as PDFKit.Mixins.PDFFontSource);
-    for (const weight of ['regular', 'bold'] as const) {
-      this.doc.font(weight);
-      layOutPlainly(this.doc);
-    }
-    this.has = { regular: glyphCoverage(fonts.regular), bold: glyphCoverage(fonts.bold) };
+    const embed = (weight: Weight) => {
+      layOutPlainly(this.doc.font(weight));
+      return { font: embeddedFont(this.doc).font, shown: new Map<string, string>() };
+    };
+    this.embedded = { regular: embed('regular'), bold: embed('bold') };
     this.root = this.doc.struct('Document');
     this.doc.addStructure(this.root);
   }
@@ -100,7 +105,7 @@ export class Paper {
     return this.doc.page.height - MARGIN - 4;
   }
 
-  newPage(orientation: 'portrait' | 'landscape' = this.orientation): void {
+  newPage(orientation: 'portrait' | 'landscape' = this.orientation ?? 'portrait'): void {
     this.orientation = orientation;
     const [short, long] = this.size;
     this.doc.addPage({
@@ -110,11 +115,10 @@ export class Paper {
     this.y = this.top;
   }
 
-  /** A part of the document at the top of a page, or below the last one where at least `height` is left on a page of this kind. */
-  start(orientation: 'portrait' | 'landscape', height: number): Element {
+  /** Turns to a new page unless this one is of the kind wanted and at least `height` is left on it. */
+  part(orientation: 'portrait' | 'landscape', height: number): void {
     if (this.orientation !== orientation || this.y + height > this.bottom) this.newPage(orientation);
     else if (this.y > this.top) this.y += 10;
-    return this.section();
   }
 
   /** Turns to a new page when less than this is left. */
@@ -156,37 +160,18 @@ export class Paper {
     this.doc.endMarkedContent();
   }
 
-  /** Heading at the left margin, with a bookmark for levels 1 and 2. */
-  heading(parent: Element, level: 1 | 2 | 3, text: string, bookmark = text): void {
-    const size = level === 1 ? 13 : level === 2 ? 10 : 8.5;
-    this.need(size * 1.3 + 30);
-    if (level === 1) this.bookmark(bookmark);
-    this.tagged(parent, `H${level}`, () => {
-      const style = { size, weight: 'bold' } as const;
-      this.put(this.clip(text, this.width, style), this.left, this.y, style);
-    });
-    this.y += size * 1.3 + 3;
-  }
-
   bookmark(text: string): void {
     this.doc.outline.addItem(this.readable(text, 'regular'));
   }
 
-  /** Wrapped text over the page's width, or a column's. Turns pages between lines. */
-  paragraph(
-    parent: Element,
-    text: string,
-    style: TextStyle,
-    at: { readonly x?: number; readonly width?: number } = {},
-  ): void {
-    const x = at.x ?? this.left;
-    const lines = this.wrap(text, at.width ?? this.right - x, style);
+  /** Lines of readable text below each other. Turns pages between them, and tags what stands on each. */
+  lines(parent: Element, type: 'P' | 'TD', lines: readonly string[], x: number, style: TextStyle): void {
     const step = lineHeight(style);
     for (let done = 0; done < lines.length; ) {
       this.need(step);
       const room = Math.max(1, Math.floor((this.bottom - this.y) / step + 1e-9));
       const part = lines.slice(done, done + room);
-      this.tagged(parent, 'P', () => {
+      this.tagged(parent, type, () => {
         for (const line of part) {
           this.put(line, x, this.y, style);
           this.y += step;
@@ -194,7 +179,6 @@ export class Paper {
       });
       done += part.length;
     }
-    this.y += 2;
   }
 
   /** One line of readable text with its top left corner at x, y. Not tagged by itself. */
@@ -212,6 +196,10 @@ export class Paper {
 
   putRight(text: string, right: number, y: number, style: TextStyle): void {
     this.put(text, right - this.widthOf(text, style), y, style);
+  }
+
+  putCentred(text: string, x: number, y: number, style: TextStyle): void {
+    this.put(text, x - this.widthOf(text, style) / 2, y, style);
   }
 
   /** Width of readable text. */
@@ -233,13 +221,20 @@ export class Paper {
    */
   readable(text: string, weight: Weight = 'regular'): string {
     let readable = '';
-    for (const character of cleanText(text)) {
-      const codePoint = character.codePointAt(0) ?? 0;
-      readable += this.has[weight](codePoint)
-        ? character
-        : `[U+${codePoint.toString(16).toUpperCase().padStart(4, '0')}]`;
-    }
+    for (const character of cleanText(text)) readable += this.shown(character, weight);
     return readable;
+  }
+
+  private shown(character: string, weight: Weight): string {
+    const { font, shown } = this.embedded[weight];
+    let text = shown.get(character);
+    if (text === undefined) {
+      const codePoint = character.codePointAt(0) ?? 0;
+      const code = codePoint.toString(16).toUpperCase().padStart(4, '0');
+      text = font.hasGlyphForCodePoint(codePoint) ? character : `[U+${code}]`;
+      shown.set(character, text);
+    }
+    return text;
   }
 
   /** Readable text cut to a width with an ellipsis. */
@@ -268,7 +263,7 @@ export class Paper {
   }
 
   /** Head and foot lines of every page, then the bytes. */
-  finish(
+  async finish(
     head: string,
     foot: (page: number, pages: number) => readonly [string, string],
   ): Promise<Uint8Array> {
@@ -286,11 +281,10 @@ export class Paper {
       this.putRight(page, this.right, doc.page.height - MARGIN + 8, style);
       doc.endMarkedContent();
     }
-    return new Promise((resolve, reject) => {
-      doc.on('error', reject);
-      doc.on('end', () => resolve(joined(this.chunks)));
-      doc.end();
+    await new Promise((resolve, reject) => {
+      doc.on('error', reject).on('end', resolve).end();
     });
+    return new Uint8Array(await new Blob(this.chunks).arrayBuffer());
   }
 
   private use({ size, weight = 'regular' }: TextStyle): void {
@@ -301,14 +295,4 @@ export class Paper {
 /** Height of a line of text: the font's ascender to descender, and a little. */
 export function lineHeight({ size }: TextStyle): number {
   return 1.26 * size;
-}
-
-function joined(chunks: readonly Uint8Array[]): Uint8Array {
-  const bytes = new Uint8Array(chunks.reduce((sum, { length }) => sum + length, 0));
-  let offset = 0;
-  for (const chunk of chunks) {
-    bytes.set(chunk, offset);
-    offset += chunk.length;
-  }
-  return bytes;
 }

@@ -1,3 +1,5 @@
+import { embeddedFont, type Glyph, type GlyphRun } from './embedded-font.ts';
+
 /**
  * A short cut past the shaping of text that needs none. Shaping every number of a long table through the font's substitution and
  * positioning tables took most of the time of writing a document (measured: 0.9 s of 1.3 s for 600 table rows); Latin, Greek and
@@ -5,41 +7,12 @@
  * as wide as the sum of its advances. Scripts that join or turn letters still go through the shaper.
  */
 
-interface Glyph {
-  readonly advanceWidth: number;
-}
-
-interface GlyphRun {
-  readonly glyphs: readonly Glyph[];
-  readonly positions: readonly {
-    readonly xAdvance: number;
-    readonly yAdvance: number;
-    readonly xOffset: number;
-    readonly yOffset: number;
-    readonly advanceWidth: number;
-  }[];
-  readonly advanceWidth: number;
-}
-
-/** The part of pdfkit 0.20's embedded font that is used here; its types leave it out. */
-interface EmbeddedFont {
-  readonly font: { readonly glyphForCodePoint: (codePoint: number) => Glyph };
-  readonly scale: number;
-  layout: (text: string, features?: unknown, onlyWidth?: boolean) => GlyphRun;
-}
-
 /** Makes the document's current font lay out plain text by itself. Once per font. */
 export function layOutPlainly(doc: PDFKit.PDFDocument): void {
-  // private in pdfkit and missing in its types; a test pins that the short cut gives the shaper's glyphs
-  const embedded = (doc as unknown as { readonly _font: EmbeddedFont })._font;
+  const embedded = embeddedFont(doc);
   const shaped = embedded.layout.bind(embedded);
-  const known = new Map<
-    string,
-    { readonly glyph: Glyph; readonly position: GlyphRun['positions'][number] }
-  >();
-  const entryOf = (
-    character: string,
-  ): { readonly glyph: Glyph; readonly position: GlyphRun['positions'][number] } => {
+  const known = new Map<string, Placed>();
+  const entryOf = (character: string): Placed => {
     let entry = known.get(character);
     if (entry === undefined) {
       const glyph = embedded.font.glyphForCodePoint(character.codePointAt(0) ?? 0);
@@ -65,6 +38,11 @@ export function layOutPlainly(doc: PDFKit.PDFDocument): void {
     }
     return { glyphs, positions, advanceWidth };
   };
+}
+
+interface Placed {
+  readonly glyph: Glyph;
+  readonly position: GlyphRun['positions'][number];
 }
 
 /** Latin without combining marks, Greek, Cyrillic, punctuation, arrows, mathematics: one glyph a character, left to right. */

@@ -1,13 +1,14 @@
-import { drawMap, mapNotes } from '../map.ts';
-import { plural } from '../verdict-line.ts';
-import { type PageContext, SMALL } from './context.ts';
-import { paintMap } from './paint-map.ts';
-import { type Element, POINTS_PER_MM } from './paper.ts';
+import { countText } from '../../findings/words.ts';
+import { drawMap } from '../map.ts';
+import type { PageContext } from './context.ts';
+import { writeMap } from './paint-map.ts';
+import { POINTS_PER_MM } from './paper.ts';
+import type { Section } from './section.ts';
 
 /** The chip coloured by pressure, between here and `below` points above the foot of the page. */
 export function writePressureMap(
   { paper, one, geometry, measure, readable }: PageContext,
-  section: Element,
+  section: Section,
   below: number,
 ): void {
   const room = paper.bottom - below - paper.y - 90;
@@ -22,9 +23,7 @@ export function writePressureMap(
     reachLabels: false,
   });
   const counts = one.part.counts;
-  const alt = `The chip as drawn, ${plural(counts.channels, 'channel')} coloured by pressure, ${plural(counts.ports, 'port')} named; the numbers are in the tables.`;
-  paintMap(paper, section, drawing, paper.left, paper.y, alt);
-  paper.y += drawing.heightMm * POINTS_PER_MM;
+  const alt = `The chip as drawn, ${countText(counts.channels, 'channel')} coloured by pressure, ${countText(counts.ports, 'port')} named; the numbers are in the tables.`;
   const numbers = drawing.markers.length === 0 ? '' : ' Numbers are those of the findings.';
-  paper.paragraph(section, `${mapNotes(drawing)}${numbers}`, SMALL);
+  writeMap(section, drawing, alt, numbers);
 }

@@ -1,10 +1,24 @@
 import type { FoundTarget } from '../../solve/targets.ts';
-import { cleanText } from '../plain-text.ts';
+import { type Column, words } from '../columns.ts';
 import { type PumpCurve, pumpCurve } from '../pump-curve.ts';
-import { rangeText, settingCells, targetCells } from '../pump-rows.ts';
-import { BODY, type PageContext, SMALL } from './context.ts';
-import type { Element, Paper, TextStyle } from './paper.ts';
-import { cells, drawTable } from './table.ts';
+import { brokenRules, limitsText, rangeText, settingColumns, targetColumns } from '../pump-rows.ts';
+import { ofCase } from '../report.ts';
+import {
+  BAND,
+  BAND_EDGE,
+  type Field,
+  fieldOf,
+  INK,
+  LABEL,
+  paintEnds,
+  paintField,
+  paintTick,
+  TITLE,
+  writeCharts,
+} from './chart.ts';
+import { type PageContext, SMALL } from './context.ts';
+import type { Paper } from './paper.ts';
+import { chapter, type Section } from './section.ts';
 
 /** Curves drawn; of more targets the tables tell. */
 const MOST_CURVES = 24;
@@ -13,64 +27,25 @@ const MOST_CURVES = 24;
 export function writePump({ paper, one }: PageContext): void {
   const { pump, network, show } = one;
   if (pump === undefined) return;
-  paper.newPage('portrait');
-  const section = paper.section();
-  paper.heading(
-    section,
-    1,
-    one.name === null ? 'Pump settings' : `Pump settings, case ${cleanText(one.name)}`,
-  );
-  paper.paragraph(section, LEGEND, SMALL);
-  paper.heading(section, 2, 'Targets');
-  drawTable(
-    paper,
-    section,
-    [
-      { head: 'target', align: 'left', width: 'share' },
-      { head: 'quantity', align: 'left', width: 'fit' },
-      { head: 'wanted', align: 'right', width: 'fit' },
-      { head: 'reached', align: 'right', width: 'fit' },
-      { head: 'by', align: 'left', width: 'share' },
-    ],
-    pump.targets.map((target) => {
-      const { on, quantity, wanted, reached, by } = targetCells(target, show);
-      return cells(on, quantity, wanted, reached, by);
-    }),
-    { size: 7.5 },
-  );
-  paper.heading(section, 2, 'Settings');
-  drawTable(
-    paper,
-    section,
-    [
-      { head: 'set', align: 'left', width: 'share' },
-      { head: 'pressure to hold', unit: 'at the pump', align: 'right', width: 'fit' },
-      { head: 'or flow to give', unit: 'into the chip', align: 'right', width: 'fit' },
-      { head: 'pressure', unit: 'in the chip', align: 'right', width: 'fit' },
-      { head: 'breaks', align: 'left', width: 'wrap' },
-      { head: 'pump limits', align: 'left', width: 'wrap' },
-    ],
-    pump.targets.map((target) => {
-      const { port, pressure, flow, inChip, breaks, kept, limits } = settingCells(one, target);
-      return cells(port, pressure, flow, inChip, breaks === '' ? 'no limit' : breaks, `${kept}: ${limits}`);
-    }),
-    { size: 7.5 },
-  );
+  const section = chapter(paper, ofCase('Pump settings', one), 'portrait');
+  section.paragraph(LEGEND, SMALL);
+  section.heading(2, 'Targets');
+  section.table(pump.targets, targetColumns(show), { size: 7.5 });
+  section.heading(2, 'Settings');
+  const columns: readonly Column<FoundTarget>[] = [
+    ...settingColumns(one, 'pressure'),
+    words('breaks', (target) => brokenRules(one, target) || 'no limit', 'wrap'),
+    words('pump limits', (target) => limitsText(one, target), 'wrap'),
+  ];
+  section.table(pump.targets, columns, { size: 7.5 });
   for (const target of pump.targets) {
     const text = rangeText(network, target, show);
-    if (text !== null) paper.paragraph(section, `${text}.`, BODY);
+    if (text !== null) section.paragraph(`${text}.`);
   }
-  writeCurves(
-    paper,
-    section,
-    pump.targets.slice(0, MOST_CURVES).map((target) => toCurve(target)),
-  );
+  const curves = pump.targets.slice(0, MOST_CURVES).map((target) => pumpCurve(one, target, show));
+  writeCurves(section, curves);
   const more = pump.targets.length - MOST_CURVES;
-  if (more > 0) paper.paragraph(section, `… and ${more} more targets, in the tables above.`, SMALL);
-
-  function toCurve(target: FoundTarget): PumpCurve {
-    return pumpCurve(one, target, show);
-  }
+  if (more > 0) section.paragraph(`… and ${more} more targets, in the tables above.`, SMALL);
 }
 
 const LEGEND =
@@ -78,62 +53,76 @@ const LEGEND =
   'All targets are met together. Everything else in this report is computed at these settings. In the curves one port is turned and the others stay as found; a shaded band is a window, a dashed line a limit of the pump, the ring the setting found.';
 
 const HEIGHT = 168;
-const GAP = 16;
 
-function writeCurves(paper: Paper, section: Element, curves: readonly PumpCurve[]): void {
-  paper.heading(section, 2, 'Setting against target');
-  const width = (paper.width - GAP) / 2;
-  curves.forEach((curve, i) => {
-    if (i % 2 === 0) paper.need(HEIGHT + 8);
-    const x = paper.left + (i % 2) * (width + GAP);
-    const [value, setting] = curve.found;
-    const alt = `${curve.title}: ${curve.y.label} against ${curve.x.label}; found ${setting.toPrecision(5)} for ${value.toPrecision(5)}.`;
-    paper.tagged(section, 'Figure', () => paintCurve(paper, curve, x, paper.y, width, HEIGHT), { alt });
-    if (i % 2 === 1 || i === curves.length - 1) paper.y += HEIGHT + 8;
-  });
+function writeCurves(section: Section, curves: readonly PumpCurve[]): void {
+  const { paper } = section;
+  section.heading(2, 'Setting against target');
+  writeCharts(
+    section,
+    curves,
+    { perRow: 2, gap: 16, height: HEIGHT + 8 },
+    (curve, x, y, width) => paintCurve(paper, curve, x, y, width),
+    ({ title, x, y, found: [value, setting] }) =>
+      `${title}: ${y.label} against ${x.label}; found ${setting.toPrecision(5)} for ${value.toPrecision(5)}.`,
+  );
 }
 
-const INK = '#222222';
 const CURVE = '#1b4965';
-const BAND = '#dcebd5';
-const BAND_EDGE = '#5c8a48';
 const LIMIT = '#b00020';
-const TITLE: TextStyle = { size: 7, weight: 'bold' };
-const LABEL: TextStyle = { size: 6.2 };
 const MARGINS = { left: 40, right: 6, top: 13, bottom: 25 } as const;
 
-function paintCurve(
-  paper: Paper,
-  curve: PumpCurve,
-  x: number,
-  y: number,
-  width: number,
-  height: number,
-): void {
+function paintCurve(paper: Paper, curve: PumpCurve, x: number, y: number, width: number): void {
   const { doc } = paper;
   const left = x + MARGINS.left;
   const right = x + width - MARGINS.right;
   const top = y + MARGINS.top;
-  const bottom = y + height - MARGINS.bottom;
-  const toX = (value: number): number =>
-    left + ((value - curve.x.low) / (curve.x.high - curve.x.low)) * (right - left);
+  const bottom = y + HEIGHT - MARGINS.bottom;
+  const field = fieldOf({ left, right, top, bottom }, curve.x);
+  const { toX } = field;
   const toY = (setting: number): number =>
     bottom - ((setting - curve.y.low) / (curve.y.high - curve.y.low)) * (bottom - top);
   paper.put(paper.clip(curve.title, width, TITLE), x, y, TITLE);
+  paintField(paper, field, 0.5, () => paintCurves(paper, curve, field, toY));
+  const [value, setting] = curve.found;
+  if (Number.isFinite(value))
+    doc.circle(toX(value), toY(setting), 2.6).lineWidth(1.1).strokeColor(INK).stroke();
+  for (const { at, text } of curve.x.ticks) {
+    paintTick(paper, toX(at), bottom, 0, 2.5, 0.5);
+    paper.putCentred(text, toX(at), bottom + 3.2, LABEL);
+  }
+  for (const { at, text } of curve.y.ticks) {
+    paintTick(paper, left - 2.5, toY(at), 2.5, 0, 0.5);
+    paper.putRight(text, left - 4, toY(at) - 3.8, LABEL);
+  }
+  curve.windows.forEach(({ text }, i) => {
+    const style = { ...LABEL, colour: BAND_EDGE };
+    const { window } = curve.windows[i];
+    const from = Math.max(left, window.min === null ? left : toX(window.min));
+    paper.put(paper.clip(text, right - from - 6, style), from + 3, top + 2 + 8 * i, style);
+  });
+  for (const { at, text } of curve.limits) {
+    const style = { ...LABEL, colour: LIMIT };
+    // below its line where there is no room above
+    const above = toY(at) - 8.2 > top;
+    paper.putRight(text, right - 3, toY(at) + (above ? -8.2 : 1), style);
+  }
+  paper.putCentred(curve.x.label, (left + right) / 2, bottom + 12.5, LABEL);
   doc.save();
-  doc.rect(left, top, right - left, bottom - top).clip();
+  doc.rotate(-90, { origin: [x + 2, (top + bottom) / 2] });
+  paper.putCentred(curve.y.label, x + 2, (top + bottom) / 2, LABEL);
+  doc.restore();
+}
+
+/** What is cut off at the field: windows, limits of the pump, the curve. */
+function paintCurves(paper: Paper, curve: PumpCurve, field: Field, toY: (setting: number) => number): void {
+  const { doc } = paper;
+  const { left, right, top, bottom, toX } = field;
   for (const { window } of curve.windows) {
     const from = window.min === null ? left : toX(window.min);
     const to = window.max === null ? right : toX(window.max);
-    doc
-      .rect(from, top, to - from, bottom - top)
-      .fillOpacity(0.7)
-      .fill(BAND)
-      .fillOpacity(1);
-    for (const end of [window.min, window.max]) {
-      if (end === null) continue;
-      doc.moveTo(toX(end), top).lineTo(toX(end), bottom).lineWidth(0.5).strokeColor(BAND_EDGE).stroke();
-    }
+    doc.rect(from, top, to - from, bottom - top);
+    doc.fillOpacity(0.7).fill(BAND).fillOpacity(1);
+    paintEnds(paper, field, window, 0.5);
   }
   for (const { at } of curve.limits) {
     doc
@@ -150,53 +139,4 @@ function paintCurve(
     for (const [value, setting] of run.slice(1)) doc.lineTo(toX(value), toY(setting));
     doc.lineWidth(1.1).lineJoin('round').strokeColor(CURVE).stroke();
   }
-  doc.restore();
-  doc
-    .rect(left, top, right - left, bottom - top)
-    .lineWidth(0.5)
-    .strokeColor(INK)
-    .stroke();
-  const [value, setting] = curve.found;
-  if (Number.isFinite(value))
-    doc.circle(toX(value), toY(setting), 2.6).lineWidth(1.1).strokeColor(INK).stroke();
-  for (const { at, text } of curve.x.ticks) {
-    doc
-      .moveTo(toX(at), bottom)
-      .lineTo(toX(at), bottom + 2.5)
-      .lineWidth(0.5)
-      .strokeColor(INK)
-      .stroke();
-    paper.put(text, toX(at) - paper.widthOf(text, LABEL) / 2, bottom + 3.2, LABEL);
-  }
-  for (const { at, text } of curve.y.ticks) {
-    doc
-      .moveTo(left - 2.5, toY(at))
-      .lineTo(left, toY(at))
-      .lineWidth(0.5)
-      .strokeColor(INK)
-      .stroke();
-    paper.putRight(text, left - 4, toY(at) - 3.8, LABEL);
-  }
-  curve.windows.forEach(({ text }, i) => {
-    const style = { ...LABEL, colour: BAND_EDGE };
-    const { window } = curve.windows[i];
-    const from = Math.max(left, window.min === null ? left : toX(window.min));
-    paper.put(paper.clip(text, right - from - 6, style), from + 3, top + 2 + 8 * i, style);
-  });
-  for (const { at, text } of curve.limits) {
-    const style = { ...LABEL, colour: LIMIT };
-    // below its line where there is no room above
-    const above = toY(at) - 8.2 > top;
-    paper.putRight(text, right - 3, toY(at) + (above ? -8.2 : 1), style);
-  }
-  paper.put(
-    curve.x.label,
-    (left + right) / 2 - paper.widthOf(curve.x.label, LABEL) / 2,
-    bottom + 12.5,
-    LABEL,
-  );
-  doc.save();
-  doc.rotate(-90, { origin: [x + 2, (top + bottom) / 2] });
-  paper.put(curve.y.label, x + 2 - paper.widthOf(curve.y.label, LABEL) / 2, (top + bottom) / 2, LABEL);
-  doc.restore();
 }

@@ -1,17 +1,16 @@
-import { BODY, type PageContext, SMALL } from './context.ts';
+import { type PageContext, SMALL } from './context.ts';
 import { lineHeight } from './paper.ts';
+import { chapter } from './section.ts';
 
 /** The run sheet in full, with line numbers, as it was read. */
 export function writeRunSheet({ paper, report, one }: PageContext): void {
   const { sheet } = one.run;
-  const section = paper.start('portrait', 200);
-  paper.heading(section, 1, 'Run sheet');
+  const section = chapter(paper, 'Run sheet', 'portrait', 200);
   if (sheet === null) {
-    paper.paragraph(section, 'The chip was checked without a run sheet.', BODY);
+    section.paragraph('The chip was checked without a run sheet.');
     return;
   }
-  paper.paragraph(
-    section,
+  section.paragraph(
     `${report.result.run_sheet?.file ?? ''}, SHA-256 ${report.result.run_sheet?.sha256 ?? ''}`,
     SMALL,
   );
@@ -28,7 +27,7 @@ export function writeRunSheet({ paper, report, one }: PageContext): void {
     const pieces = paper.wrap(line.trim(), paper.right - x0, style);
     pieces.forEach((piece, k) => {
       paper.need(step);
-      paper.tagged(section, 'Code', () => {
+      paper.tagged(section.element, 'Code', () => {
         if (k === 0) paper.putRight(String(i + 1), paper.left + numberWidth, paper.y, numberStyle);
         paper.put(piece, x0, paper.y, style);
       });

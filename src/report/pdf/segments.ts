@@ -1,40 +1,45 @@
-import { formatMm, formatNumber, largestMagnitude, type Shown } from '../../runsheet/shown.ts';
+import { formatMm } from '../../runsheet/shown.ts';
+import { figures, words } from '../columns.ts';
+import { quantityColumns } from '../quantities.ts';
 import type { ReportedCase } from '../report.ts';
 import type { SegmentRow } from '../result-rows.ts';
+import { segmentQuantity } from '../result-schema.ts';
 import { type PageContext, SMALL } from './context.ts';
-import { type Column, drawTable, type TableRow } from './table.ts';
+import { chapter, Section } from './section.ts';
 
 /** Above this the segments are in the CSV and JSON files only. */
-export const SEGMENT_BOUND = 2000;
+const SEGMENT_BOUND = 2000;
 
 /** The table of segments, the chords of one curve in one row; over the bound a line that says where they are. */
 export function writeSegments({ paper, one }: PageContext): void {
   const { network } = one;
   if (network.segmentCount === 0) return;
   if (network.segmentCount > SEGMENT_BOUND) {
-    const section = paper.section();
-    paper.heading(section, 2, 'Segments');
-    paper.paragraph(
-      section,
+    const section = new Section(paper);
+    section.heading(2, 'Segments');
+    section.paragraph(
       `The ${network.segmentCount} segments are not printed: all are in the CSV (--formats csv) and JSON (--formats json) files.`,
       SMALL,
     );
     return;
   }
-  const section = paper.start('landscape', 150);
-  paper.heading(section, 1, 'Segments');
-  paper.paragraph(section, LEGEND, SMALL);
+  const section = chapter(paper, 'Segments', 'landscape', 150);
+  section.paragraph(LEGEND, SMALL);
   const rows = printedRows(one);
-  const columns = columnsOf(rows, one);
-  const table: TableRow[] = rows.map((row) => ({
-    kind: 'cells',
-    cells: [nameOf(row), ...columns.map(({ text }) => text(row))],
-  }));
-  drawTable(
-    paper,
-    section,
-    [{ head: 'segment', align: 'left', width: 'share' }, ...columns.map(({ column }) => column)],
-    table,
+  const columns = quantityColumns(segmentQuantity, rows, one.show);
+  section.table(
+    rows,
+    [
+      words('segment', ({ name }) => name, 'share'),
+      ...columns('x1_mm', 'y1_mm', 'x2_mm', 'y2_mm'),
+      figures('tightest bend', ({ bendMm }) => (bendMm === 0 ? '–' : formatMm(bendMm)), 'mm'),
+      ...columns('length_m'),
+      ...columns('resistance_pa_s_m3'),
+      ...columns('pressure_drop_pa'),
+      ...columns('wall_shear_floor_mean_pa'),
+      ...columns('wall_shear_floor_peak_pa'),
+      ...columns('residence_time_s'),
+    ],
     { size: 6.5 },
   );
 }
@@ -45,16 +50,9 @@ const LEGEND =
   'What a joint adds to its reach belongs to none of its segments.';
 
 /** One straight segment, or the pieces of one curve together. */
-interface Printed {
-  readonly first: SegmentRow;
-  readonly last: SegmentRow;
-  readonly pieces: number;
+interface Printed extends SegmentRow {
   /** 0 for a straight piece. */
-  readonly bendRadiusMm: number;
-  readonly lengthM: number;
-  readonly resistance: number | null;
-  readonly dropPa: number | null;
-  readonly timeS: number | null;
+  readonly bendMm: number;
 }
 
 function printedRows({ network, part }: ReportedCase): Printed[] {
@@ -62,15 +60,17 @@ function printedRows({ network, part }: ReportedCase): Printed[] {
   for (let segment = 0; segment < network.segmentCount; ) {
     const end = curveEnd(segment);
     const rows = Array.from({ length: end - segment }, (_, i) => part.segments.at(segment + i));
+    const [first, last] = [rows[0], rows[rows.length - 1]];
     printed.push({
-      first: rows[0],
-      last: rows[rows.length - 1],
-      pieces: rows.length,
-      bendRadiusMm: tightest(segment, end),
-      lengthM: rows.reduce((sum, row) => sum + row.length_m, 0),
-      resistance: total(rows, (row) => row.resistance_pa_s_m3),
-      dropPa: total(rows, (row) => row.pressure_drop_pa),
-      timeS: total(rows, (row) => row.residence_time_s),
+      ...first,
+      name: rows.length === 1 ? first.name : `${first.name} … ${last.name}`,
+      x2_mm: last.x2_mm,
+      y2_mm: last.y2_mm,
+      bendMm: tightest(segment, end),
+      length_m: rows.reduce((sum, row) => sum + row.length_m, 0),
+      resistance_pa_s_m3: total(rows, 'resistance_pa_s_m3'),
+      pressure_drop_pa: total(rows, 'pressure_drop_pa'),
+      residence_time_s: total(rows, 'residence_time_s'),
     });
     segment = end;
   }
@@ -98,54 +98,14 @@ function printedRows({ network, part }: ReportedCase): Printed[] {
 }
 
 /** null when any piece has none. */
-function total(rows: readonly SegmentRow[], pick: (row: SegmentRow) => number | null): number | null {
+function total(
+  rows: readonly SegmentRow[],
+  key: 'resistance_pa_s_m3' | 'pressure_drop_pa' | 'residence_time_s',
+): number | null {
   let sum = 0;
-  for (const row of rows) {
-    const value = pick(row);
+  for (const { [key]: value } of rows) {
     if (value === null) return null;
     sum += value;
   }
   return sum;
-}
-
-function nameOf({ first, last, pieces }: Printed): string {
-  return pieces === 1 ? first.name : `${first.name} … ${last.name}`;
-}
-
-interface SegmentColumn {
-  readonly column: Column;
-  readonly text: (row: Printed) => string;
-}
-
-function columnsOf(rows: readonly Printed[], { show }: ReportedCase): readonly SegmentColumn[] {
-  const number = (head: string, shown: Shown, pick: (row: Printed) => number | null): SegmentColumn => {
-    const unit = show.unit(shown, largestMagnitude(rows.map(pick)));
-    return {
-      column: { head, unit: unit.text, align: 'right', width: 'fit' },
-      text: (row) => {
-        const value = pick(row);
-        return value === null ? '–' : formatNumber(value / unit.si);
-      },
-    };
-  };
-  const place = (head: string, pick: (row: Printed) => number): SegmentColumn => ({
-    column: { head, unit: 'mm', align: 'right', width: 'fit' },
-    text: (row) => formatMm(pick(row)),
-  });
-  return [
-    place('x₁', (row) => row.first.x1_mm),
-    place('y₁', (row) => row.first.y1_mm),
-    place('x₂', (row) => row.last.x2_mm),
-    place('y₂', (row) => row.last.y2_mm),
-    {
-      column: { head: 'tightest bend', unit: 'mm', align: 'right', width: 'fit' },
-      text: (row) => (row.bendRadiusMm === 0 ? '–' : formatMm(row.bendRadiusMm)),
-    },
-    number('length', 'length', (row) => row.lengthM),
-    number('resistance', 'resistance', (row) => row.resistance),
-    number('drop', 'pressure', (row) => row.dropPa),
-    number('floor mean', 'wall_shear', (row) => row.first.wall_shear_floor_mean_pa),
-    number('floor peak', 'wall_shear', (row) => row.first.wall_shear_floor_peak_pa),
-    number('time', 'residence_time', (row) => row.timeS),
-  ];
 }

@@ -1,15 +1,12 @@
 import { BODY, BODY_BOLD } from './context.ts';
-import { type Element, lineHeight, type Paper } from './paper.ts';
+import { lineHeight } from './paper.ts';
+import type { Section } from './section.ts';
 
 const VERDICT_COLOURS = { ready: '#14532d', hold: '#8f1414' } as const;
 
 /** The verdict in a box, its counts beside it. */
-export function writeBanner(
-  paper: Paper,
-  section: Element,
-  verdict: 'ready' | 'hold',
-  countsText: string,
-): void {
+export function writeBanner(section: Section, verdict: 'ready' | 'hold', countsText: string): void {
+  const { paper } = section;
   const boxY = paper.y + 1;
   const word = verdict.toUpperCase();
   const wordStyle = { size: 15, weight: 'bold', colour: '#ffffff' } as const;
@@ -22,7 +19,7 @@ export function writeBanner(
       .strokeColor(VERDICT_COLOURS[verdict])
       .stroke();
   });
-  paper.tagged(section, 'P', () => {
+  paper.tagged(section.element, 'P', () => {
     paper.put(word, paper.left + 8, boxY + 2.2, wordStyle);
     const counts = { size: 9.5, weight: 'bold' } as const;
     const room = paper.width - wordWidth - 16;
@@ -35,7 +32,8 @@ export function writeBanner(
 export const SIGN_HEIGHT = 40;
 
 /** Lines to sign, at the foot of the page. */
-export function writeSignatures(paper: Paper, section: Element): void {
+export function writeSignatures(section: Section): void {
+  const { paper } = section;
   const y = Math.max(paper.y + 20, paper.bottom - 14);
   const labels = ['checked', 'approved', 'date'];
   const gap = 18;
@@ -43,7 +41,7 @@ export function writeSignatures(paper: Paper, section: Element): void {
   labels.forEach((label, i) => {
     const x = paper.left + i * (width + gap);
     paper.rule(y, x, x + width, '#222222', 0.5);
-    paper.tagged(section, 'P', () => paper.put(label, x, y + 2, BODY_BOLD));
+    paper.tagged(section.element, 'P', () => paper.put(label, x, y + 2, BODY_BOLD));
   });
   paper.y = y + 2 + lineHeight(BODY);
 }

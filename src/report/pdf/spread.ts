@@ -1,6 +1,7 @@
 import { formatShare, type Show } from '../../runsheet/shown.ts';
 import type { Spread, SpreadOutput } from '../../spread/types.ts';
-import { cleanText } from '../plain-text.ts';
+import { words } from '../columns.ts';
+import { ofCase } from '../report.ts';
 import { type DistributionChart, distributionChart } from '../spread-charts.ts';
 import {
   cornerText,
@@ -8,13 +9,25 @@ import {
   type RankedCause,
   rankedCauses,
   remarks,
-  spreadCells,
+  spreadColumns,
   toleranceText,
   yieldText,
 } from '../spread-rows.ts';
-import { BODY, BODY_BOLD, type PageContext, SMALL } from './context.ts';
-import type { Element, Paper, TextStyle } from './paper.ts';
-import { cells, drawTable, type TableRow } from './table.ts';
+import {
+  BAND,
+  type Field,
+  fieldOf,
+  INK,
+  LABEL,
+  paintEnds,
+  paintField,
+  paintTick,
+  TITLE,
+  writeCharts,
+} from './chart.ts';
+import { BODY_BOLD, type PageContext, SMALL } from './context.ts';
+import type { Paper } from './paper.ts';
+import { chapter, type Section } from './section.ts';
 
 const MOST_CHARTS = 24;
 const MOST_ROWS = 1000;
@@ -24,22 +37,20 @@ const MOST_BARS = 20;
 export function writeSpread({ paper, one }: PageContext): void {
   const { spread, show } = one;
   if (spread === undefined) return;
-  paper.newPage('portrait');
-  const section = paper.section();
-  paper.heading(section, 1, one.name === null ? 'Spread' : `Spread, case ${cleanText(one.name)}`);
+  const section = chapter(paper, ofCase('Spread', one), 'portrait');
   if (spread.draws < spread.asked) {
     const text = `Stopped before its end: ${spread.draws} of ${spread.asked} draws were made.`;
-    paper.paragraph(section, text, BODY_BOLD);
+    section.paragraph(text, BODY_BOLD);
   }
-  paper.paragraph(section, sentence(yieldText(spread)), BODY_BOLD);
+  section.paragraph(sentence(yieldText(spread)), BODY_BOLD);
   for (const text of [cornerText(spread, show), ...remarks(spread)]) {
-    if (text !== null) paper.paragraph(section, sentence(text), BODY);
+    if (text !== null) section.paragraph(sentence(text));
   }
-  writeTolerances(paper, section, spread, show);
-  writeCauses(paper, section, spread);
-  writeDistributions(paper, section, spread, show);
-  writeNumbers(paper, section, spread, show);
-  paper.paragraph(section, method(spread), SMALL);
+  writeTolerances(section, spread, show);
+  writeCauses(section, spread);
+  writeDistributions(section, spread, show);
+  writeNumbers(section, spread, show);
+  section.paragraph(method(spread), SMALL);
 }
 
 function sentence(text: string): string {
@@ -57,38 +68,28 @@ function method({ seed, draws }: Spread): string {
   );
 }
 
-function writeTolerances(paper: Paper, section: Element, { causes }: Spread, show: Show): void {
-  paper.heading(section, 2, 'Tolerances');
-  drawTable(
-    paper,
-    section,
-    [
-      { head: 'tolerance', align: 'left', width: 'share' },
-      { head: 'what varies', align: 'left', width: 'share' },
-      { head: 'by', align: 'left', width: 'fit' },
-    ],
-    causes.slice(0, MOST_ROWS).map((cause) => cells(cause.key, cause.text, toleranceText(cause, show))),
-  );
+function writeTolerances(section: Section, { causes }: Spread, show: Show): void {
+  section.heading(2, 'Tolerances');
+  section.table(causes.slice(0, MOST_ROWS), [
+    words('tolerance', ({ key }) => key, 'share'),
+    words('what varies', ({ text }) => text, 'share'),
+    words('by', (cause) => toleranceText(cause, show)),
+  ]);
 }
 
 /* ---------- causes ---------- */
 
-const INK = '#222222';
 const BAR = '#1b4965';
-const BAND = '#dcebd5';
-const BAND_EDGE = '#5c8a48';
 const CURVE = '#b05a00';
-const LABEL: TextStyle = { size: 6.2 };
-const TITLE: TextStyle = { size: 7, weight: 'bold' };
 
-function writeCauses(paper: Paper, section: Element, spread: Spread): void {
+function writeCauses(section: Section, spread: Spread): void {
+  const { paper } = section;
   const overall = overallShares(spread);
   if (overall === null) return;
   const ranked = rankedCauses(overall.shares, spread.causes).slice(0, MOST_BARS);
   const of = overall.over === 'windows' ? 'every number that a window is set for' : 'every number that moves';
-  paper.heading(section, 2, 'Which tolerance to pay for');
-  paper.paragraph(
-    section,
+  section.heading(2, 'Which tolerance to pay for');
+  section.paragraph(
     `Share of the variance that each tolerance brings, as a mean over ${of} (first order). Halving a tolerance takes away three quarters of its share.`,
     SMALL,
   );
@@ -98,9 +99,7 @@ function writeCauses(paper: Paper, section: Element, spread: Spread): void {
   for (let done = 0; done < ranked.length; ) {
     const room = Math.max(1, Math.floor((paper.bottom - paper.y) / step));
     const part = ranked.slice(done, done + room);
-    paper.tagged(section, 'Figure', () => paintCauses(paper, part, ranked[0].share, step), {
-      alt: `Causes of spread: ${alt}.`,
-    });
+    section.figure(`Causes of spread: ${alt}.`, () => paintCauses(paper, part, ranked[0].share, step));
     paper.y += part.length * step + 4;
     done += part.length;
     if (done < ranked.length) paper.newPage();
@@ -128,10 +127,9 @@ function rounded(share: number): number {
 /* ---------- distributions ---------- */
 
 const CHART_HEIGHT = 104;
-const CHART_GAP = 12;
-const PER_ROW = 3;
 
-function writeDistributions(paper: Paper, section: Element, spread: Spread, show: Show): void {
+function writeDistributions(section: Section, spread: Spread, show: Show): void {
+  const { paper } = section;
   const charts: DistributionChart[] = [];
   let more = 0;
   for (const output of byRoom(spread.outputs)) {
@@ -140,23 +138,19 @@ function writeDistributions(paper: Paper, section: Element, spread: Spread, show
     else if (charts.length >= MOST_CHARTS) more++;
   }
   if (charts.length === 0) return;
-  paper.heading(section, 2, 'Distributions of what has a window');
-  paper.paragraph(
-    section,
+  section.heading(2, 'Distributions of what has a window');
+  section.paragraph(
     'Bars: the draws. Line: first order. Shaded: what is asked. Dashed: the nominal value. Those with least room first.',
     SMALL,
   );
-  const width = (paper.width - (PER_ROW - 1) * CHART_GAP) / PER_ROW;
-  charts.forEach((chart, i) => {
-    const column = i % PER_ROW;
-    if (column === 0) paper.need(CHART_HEIGHT + 6);
-    const x = paper.left + column * (width + CHART_GAP);
-    paper.tagged(section, 'Figure', () => paintDistribution(paper, chart, x, paper.y, width), {
-      alt: chart.alt,
-    });
-    if (column === PER_ROW - 1 || i === charts.length - 1) paper.y += CHART_HEIGHT + 6;
-  });
-  if (more > 0) paper.paragraph(section, `… and ${more} more, in the table.`, SMALL);
+  writeCharts(
+    section,
+    charts,
+    { perRow: 3, gap: 12, height: CHART_HEIGHT + 6 },
+    (chart, x, y, width) => paintDistribution(paper, chart, x, y, width),
+    ({ alt }) => alt,
+  );
+  if (more > 0) section.paragraph(`… and ${more} more, in the table.`, SMALL);
 }
 
 /** Numbers of windows, those with the fewest standard deviations of room first. */
@@ -183,17 +177,29 @@ function paintDistribution(
   y: number,
   width: number,
 ): void {
-  const { doc } = paper;
   const top = y + 22;
   const bottom = y + CHART_HEIGHT - 16;
   const [left, right] = [x + 4, x + width - 4];
-  const toX = (value: number): number =>
-    left + ((value - chart.low) / (chart.high - chart.low)) * (right - left);
-  const toY = (height: number): number => bottom - height * (bottom - top) * 0.94;
+  const field = fieldOf({ left, right, top, bottom }, chart);
   paper.put(paper.clip(chart.title, width, TITLE), x, y, TITLE);
   paper.put(paper.clip(chart.subtitle, width, LABEL), x, y + 10, LABEL);
-  doc.save();
-  doc.rect(left, top, right - left, bottom - top).clip();
+  paintField(paper, field, 0.4, () => paintBars(paper, chart, field));
+  const unitLeft = right - paper.widthOf(chart.unit, LABEL);
+  for (const { at, text } of chart.ticks) {
+    paintTick(paper, field.toX(at), bottom, 0, 2, 0.4);
+    const textWidth = paper.widthOf(text, LABEL);
+    const textLeft = field.toX(at) - textWidth / 2;
+    // the unit stands at the end of the axis
+    if (textLeft + textWidth < unitLeft - 3) paper.put(text, textLeft, bottom + 3, LABEL);
+  }
+  paper.put(chart.unit, unitLeft, bottom + 3, LABEL);
+}
+
+/** What is cut off at the field: the window, the draws, first order, the nominal value. */
+function paintBars(paper: Paper, chart: DistributionChart, field: Field): void {
+  const { doc } = paper;
+  const { left, right, top, bottom, toX } = field;
+  const toY = (height: number): number => bottom - height * (bottom - top) * 0.94;
   const { min, max } = chart.window;
   const from = min === null ? left : Math.max(left, toX(min));
   const to = max === null ? right : Math.min(right, toX(max));
@@ -209,86 +215,27 @@ function paintDistribution(
     else doc.lineTo(at, toY(height));
   });
   if (chart.curve.length > 0) doc.lineWidth(0.9).lineJoin('round').strokeColor(CURVE).stroke();
-  for (const end of [min, max]) {
-    if (end === null) continue;
-    doc.moveTo(toX(end), top).lineTo(toX(end), bottom).lineWidth(0.8).strokeColor(BAND_EDGE).stroke();
-  }
+  paintEnds(paper, field, chart.window, 0.8);
   doc.moveTo(toX(chart.nominal), top).lineTo(toX(chart.nominal), bottom).dash(2, { space: 2 });
   doc.lineWidth(0.7).strokeColor(INK).stroke().undash();
-  doc.restore();
-  doc
-    .rect(left, top, right - left, bottom - top)
-    .lineWidth(0.4)
-    .strokeColor(INK)
-    .stroke();
-  paintAxis(paper, chart, toX, bottom, right);
-}
-
-function paintAxis(
-  paper: Paper,
-  { ticks, unit }: DistributionChart,
-  toX: (value: number) => number,
-  bottom: number,
-  right: number,
-): void {
-  const { doc } = paper;
-  const unitLeft = right - paper.widthOf(unit, LABEL);
-  for (const { at, text } of ticks) {
-    doc
-      .moveTo(toX(at), bottom)
-      .lineTo(toX(at), bottom + 2)
-      .lineWidth(0.4)
-      .strokeColor(INK)
-      .stroke();
-    const textWidth = paper.widthOf(text, LABEL);
-    const textLeft = toX(at) - textWidth / 2;
-    // the unit stands at the end of the axis
-    if (textLeft + textWidth < unitLeft - 3) paper.put(text, textLeft, bottom + 3, LABEL);
-  }
-  paper.put(unit, unitLeft, bottom + 3, LABEL);
 }
 
 /* ---------- numbers ---------- */
 
-function writeNumbers(paper: Paper, section: Element, spread: Spread, show: Show): void {
+function writeNumbers(section: Section, spread: Spread, show: Show): void {
+  const { paper } = section;
   paper.newPage('landscape');
-  paper.heading(section, 2, 'Numbers');
-  const rows: TableRow[] = [];
-  let group = '';
-  for (const output of spread.outputs.slice(0, MOST_ROWS)) {
-    if (output.on !== group) {
-      rows.push({ kind: 'group', text: GROUPS[output.on] });
-      group = output.on;
-    }
-    const { what, quantity, unit, nominal, mean, sd, linearSd, low, high, asked, kept, causes, notLinear } =
-      spreadCells(output, spread, show);
-    rows.push(
-      cells(what, quantity, unit, nominal, mean, low, high, sd, linearSd, notLinear, asked, kept, causes),
-    );
-  }
-  drawTable(
-    paper,
-    section,
-    [
-      { head: 'what', align: 'left', width: 'share' },
-      { head: 'quantity', align: 'left', width: 'fit' },
-      { head: 'unit', align: 'left', width: 'fit' },
-      { head: 'nominal', align: 'right', width: 'fit' },
-      { head: 'mean', align: 'right', width: 'fit' },
-      { head: '2.5 %', align: 'right', width: 'fit' },
-      { head: '97.5 %', align: 'right', width: 'fit' },
-      { head: 'sd', align: 'right', width: 'fit' },
-      { head: 'sd,', unit: 'first order', align: 'right', width: 'fit' },
-      { head: 'linear', align: 'left', width: 'fit' },
-      { head: 'asked', align: 'left', width: 'fit' },
-      { head: 'kept', align: 'right', width: 'fit' },
-      { head: 'main causes', align: 'left', width: 'share' },
-    ],
-    rows,
-    { size: 6.5 },
+  section.heading(2, 'Numbers');
+  const outputs = spread.outputs.slice(0, MOST_ROWS);
+  const { what, quantity, unit, nominal, mean, low, high, sd, linearSd, linear, asked, kept, causes } =
+    spreadColumns(spread, show);
+  section.table(
+    outputs,
+    [what, quantity, unit, nominal, mean, low, high, sd, linearSd, linear, asked, kept, causes],
+    { size: 6.5, group: ({ on }, i) => (on === outputs[i - 1]?.on ? null : GROUPS[on]) },
   );
   const more = spread.outputs.length - MOST_ROWS;
-  if (more > 0) paper.paragraph(section, `… and ${more} more, in the CSV and JSON files.`, SMALL);
+  if (more > 0) section.paragraph(`… and ${more} more, in the CSV and JSON files.`, SMALL);
 }
 
 const GROUPS: Readonly<Record<SpreadOutput['on'], string>> = {

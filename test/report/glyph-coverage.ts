@@ -1,7 +1,6 @@
 /**
- * Which characters a TrueType font has a glyph for, read from its `cmap` table (OpenType 1.9, formats 4 and 12). So that a
- * character that the embedded font lacks is written as its code, and not as an empty box or nothing.
- * Throws a RangeError when the bytes hold no Unicode cmap.
+ * Which characters a TrueType font has a glyph for, read from its `cmap` table (OpenType 1.9, formats 4 and 12): a second opinion
+ * beside the library that the PDF writer asks. Throws a RangeError when the bytes hold no Unicode cmap.
  */
 export function glyphCoverage(font: Uint8Array): (codePoint: number) => boolean {
   const view = new DataView(font.buffer, font.byteOffset, font.byteLength);
