@@ -39,7 +39,7 @@ describe('stretches that face each other', () => {
   });
 
   it('reach as far on both centrelines as any of a group, whichever way the second runs', () => {
-    const group = [facing(0, 5, 9, 4, 3, 7), facing(1, 3, 2, 8, 3, 7)];
+    const group = [facing(0, 5, 4, 9, 3, 7), facing(1, 3, 2, 8, 3, 7), facing(2, 3, 7, 6, 3, 7)];
     expect(extentOf(group)).toEqual({ centrelineA: 3, centrelineB: 7, fromA: 0, toA: 5, fromB: 2, toB: 9 });
     expect(rangeOf([])).toEqual([Number.POSITIVE_INFINITY, Number.NEGATIVE_INFINITY]);
   });
