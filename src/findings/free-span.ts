@@ -8,6 +8,7 @@
  * Ends are open: a circle's middle may lie on an end, but not beyond; a cell's middle that does counts where it is nearest.
  * Cost: about the number of pillars times the logarithm of the precision.
  */
+import FlatQueue from 'flatqueue';
 import { indexRings } from '../chip/rings.ts';
 import type { Channel, Obstacle } from '../chip/types.ts';
 import { indexBoxes } from '../geometry/box-index.ts';
@@ -53,7 +54,8 @@ export function freeSpan(
     }
     return room;
   };
-  const heap = new Cells();
+  // the largest bound first
+  const heap = new FlatQueue<Cell>();
   for (const { points } of centrelines) {
     // Cells as wide as the channel along the centreline hold every point within half of it.
     for (const [x1, y1, x2, y2] of linesAlong(points)) {
@@ -66,7 +68,7 @@ export function freeSpan(
     }
   }
   let looked = 0;
-  for (let cell = heap.pop(); cell !== null; cell = heap.pop()) {
+  for (let cell = heap.pop(); cell !== undefined; cell = heap.pop()) {
     if (cell.bound <= best + (PRECISION * drawnWidthMm) / 2) break;
     if (++looked > MOST_CELLS) return { spanMm: Math.min(drawnWidthMm, 2 * cell.bound), xMm, yMm };
     const quarter = cell.half / 2;
@@ -78,7 +80,7 @@ export function freeSpan(
   function add(x: number, y: number, halfSide: number): void {
     const room = roomAt(x, y);
     const bound = Math.min(half, room + halfSide * Math.SQRT2);
-    if (bound > best + (PRECISION * drawnWidthMm) / 2) heap.push({ x, y, half: halfSide, bound });
+    if (bound > best + (PRECISION * drawnWidthMm) / 2) heap.push({ x, y, half: halfSide, bound }, -bound);
   }
 }
 
@@ -178,40 +180,4 @@ interface Cell {
   readonly half: number;
   /** No circle with its middle in the cell has a larger radius. */
   readonly bound: number;
-}
-
-/** A binary heap, the largest bound first. */
-class Cells {
-  readonly #cells: Cell[] = [];
-
-  push(cell: Cell): void {
-    const cells = this.#cells;
-    let i = cells.push(cell) - 1;
-    while (i > 0) {
-      const parent = (i - 1) >> 1;
-      if (cells[parent].bound >= cell.bound) break;
-      cells[i] = cells[parent];
-      i = parent;
-    }
-    cells[i] = cell;
-  }
-
-  pop(): Cell | null {
-    const cells = this.#cells;
-    const first = cells[0];
-    const last = cells.pop();
-    if (first === undefined || last === undefined) return null;
-    if (cells.length === 0) return first;
-    let i = 0;
-    for (;;) {
-      let child = 2 * i + 1;
-      if (child >= cells.length) break;
-      if (child + 1 < cells.length && cells[child + 1].bound > cells[child].bound) child++;
-      if (cells[child].bound <= last.bound) break;
-      cells[i] = cells[child];
-      i = child;
-    }
-    cells[i] = last;
-    return first;
-  }
 }
