@@ -1,13 +1,8 @@
-import type { Fonts, PaperSize } from '../report/pdf/paper.ts';
+import type { PdfOptions } from '../report/pdf/options.ts';
 import type { Report } from '../report/report.ts';
 
-export interface PdfFileOptions {
-  readonly paper?: PaperSize;
-  /** Printed, and the document's creation date. */
-  readonly date: Date;
-  /** TrueType files with every glyph that reports use; the program's own when left out. */
-  readonly fonts?: Fonts;
-}
+/** Without fonts the program's own; without a paper size A4. */
+export type PdfFileOptions = Partial<PdfOptions> & Pick<PdfOptions, 'date'>;
 
 /** The report to sign, as the bytes of a PDF. The writer and its fonts are loaded when it is asked for. */
 export async function writePdf(

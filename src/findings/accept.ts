@@ -1,3 +1,4 @@
+import { grouped } from '../by-key.ts';
 import { acceptedName } from '../chip/accept.ts';
 import { UNACCEPTABLE_RULES } from '../runsheet/measures.ts';
 import { measureText, type Show } from '../runsheet/shown.ts';
@@ -24,12 +25,7 @@ export function acceptFindings(
   madeUp: ReadonlySet<string> = new Set(),
 ): Finding[] {
   if (entries.length === 0) return [...findings];
-  const byRule = new Map<string, AcceptEntry[]>();
-  for (const entry of entries) {
-    const list = byRule.get(entry.rule);
-    if (list === undefined) byRule.set(entry.rule, [entry]);
-    else list.push(entry);
-  }
+  const byRule = grouped(entries, ({ rule }) => rule);
   const matched = new Set<AcceptEntry>();
   const judged = findings.map((finding) => {
     const named = (byRule.get(finding.rule) ?? []).filter(
@@ -78,9 +74,8 @@ function unmatchedAccept(
 ): Finding {
   const { rule, at, line } = entry;
   const skipped = notRun.find((one) => one.rule === rule);
-  const elsewhere = [
-    ...new Set(findings.filter((finding) => finding.rule === rule).flatMap(({ names }) => names)),
-  ];
+  const same = findings.filter((finding) => finding.rule === rule);
+  const elsewhere = [...new Set(same.flatMap(({ names }) => names))];
   const reason =
     skipped !== undefined
       ? `the rule was not run: ${skipped.why}`

@@ -1,11 +1,16 @@
 import type { Channel } from '../chip/types.ts';
+import type { Network } from '../network/types.ts';
+import type { Line, Place } from './closest.ts';
 
-export interface DirectedPlace {
-  readonly xMm: number;
-  readonly yMm: number;
+interface DirectedPlace extends Place {
   /** Unit vector along the drawn direction. */
   readonly ux: number;
   readonly uy: number;
+}
+
+/** The channel that a centreline belongs to. */
+export function channelOf({ chip, trace }: Network, centreline: number): Channel {
+  return chip.channels[trace.near.pieces.centrelineChannel[centreline]];
 }
 
 /** Middle of a channel's first centreline, by length; null when the channel has no length. */
@@ -28,14 +33,9 @@ export function middleOfChannel({ centrelines }: Channel): DirectedPlace | null 
 }
 
 /** A line across the channel at a place, from wall to wall. */
-export function acrossMark({ xMm, yMm, ux, uy }: DirectedPlace, widthMm: number) {
+export function acrossMark({ xMm, yMm, ux, uy }: DirectedPlace, widthMm: number): Line {
   const half = widthMm / 2;
-  return {
-    x1Mm: xMm + uy * half,
-    y1Mm: yMm - ux * half,
-    x2Mm: xMm - uy * half,
-    y2Mm: yMm + ux * half,
-  };
+  return [xMm + uy * half, yMm - ux * half, xMm - uy * half, yMm + ux * half];
 }
 
 function pieceLength(points: Float64Array, k: number): number {

@@ -1,3 +1,4 @@
+import { grouped } from '../by-key.ts';
 import { madeUpNames } from '../chip/accept.ts';
 import type { AcceptEntry } from '../runsheet/types.ts';
 import { acceptFindings } from './accept.ts';
@@ -15,36 +16,25 @@ import { showFor } from './words.ts';
  * Cost: linear in pieces, reaches and near pairs, but for sorting the findings.
  */
 export function findAll(context: FindingContext, rules: readonly Rule[] = RULES): FindingReport {
-  const raw: Finding[] = [];
-  const skipped: NotRun[] = [];
   const hasChannels = !isAllOutlines(context);
-  for (const rule of rules) {
-    const runs = hasChannels || rule.withoutChannels === true;
-    const outcome = runs ? rule.run(context) : withoutChannels(rule);
-    for (const finding of outcome.findings) raw.push(finding);
-    for (const entry of outcome.notRun) skipped.push(entry);
-  }
-  const notRun = onePerRule(skipped);
+  const outcomes = rules.map((rule) =>
+    hasChannels || rule.withoutChannels === true ? rule.run(context) : withoutChannels(rule),
+  );
+  const raw = outcomes.flatMap(({ findings }) => findings);
+  const notRun = onePerRule(outcomes.flatMap((outcome) => outcome.notRun));
   const ruleNames = new Set(rules.flatMap(({ names }) => names));
   const { chip, run } = context;
-  const findings = acceptFindings(
-    raw,
-    notRun,
-    run.accept,
-    ruleNames,
-    showFor(context),
-    madeUpNames(chip),
-  ).sort(byUrgency);
-  return toReport(findings, notRun);
+  const show = showFor(context);
+  const findings = acceptFindings(raw, notRun, run.accept, ruleNames, show, madeUpNames(chip));
+  return toReport(findings.sort(byUrgency), notRun);
 }
 
 /**
  * Cases of one run sheet share its `accept` entries: one that matches a finding in any case is not unmatched in the others.
  */
 export function settleAccepts(reports: readonly FindingReport[]): FindingReport[] {
-  const matched = new Set<string>();
-  for (const { findings } of reports)
-    for (const { accepted } of findings) if (accepted !== null) matched.add(entryKey(accepted));
+  const accepted = reports.flatMap(({ findings }) => findings.flatMap((finding) => finding.accepted ?? []));
+  const matched = new Set(accepted.map(entryKey));
   return reports.map((report) => {
     const kept = report.findings.filter(
       ({ unmatched }) => unmatched === undefined || !matched.has(entryKey(unmatched)),
@@ -66,15 +56,16 @@ function withoutChannels({ names }: Rule): RuleOutcome {
 
 function toReport(findings: readonly Finding[], notRun: readonly NotRun[]): FindingReport {
   const open = findings.filter(({ accepted }) => accepted === null);
-  const blockers = countOf(open, 'blocker');
+  const countOf = (severity: Severity): number => open.filter((one) => one.severity === severity).length;
+  const blockers = countOf('blocker');
   return {
     findings,
     notRun,
     verdict: blockers === 0 ? 'ready' : 'hold',
     counts: {
       blockers,
-      cautions: countOf(open, 'caution'),
-      notes: countOf(open, 'note'),
+      cautions: countOf('caution'),
+      notes: countOf('note'),
       accepted: findings.length - open.length,
       rulesNotRun: notRun.length,
     },
@@ -83,10 +74,8 @@ function toReport(findings: readonly Finding[], notRun: readonly NotRun[]): Find
 
 /** One line per rule, with all its reasons, by rule name. */
 function onePerRule(skipped: readonly NotRun[]): NotRun[] {
-  const reasons = new Map<string, Set<string>>();
-  for (const { rule, why } of skipped) reasons.set(rule, (reasons.get(rule) ?? new Set()).add(why));
-  return [...reasons]
-    .map(([rule, whys]) => ({ rule, why: [...whys].join('; ') }))
+  return [...grouped(skipped, ({ rule }) => rule)]
+    .map(([rule, reasons]) => ({ rule, why: [...new Set(reasons.map(({ why }) => why))].join('; ') }))
     .sort((a, b) => compareText(a.rule, b.rule));
 }
 
@@ -112,8 +101,4 @@ function compareText(a: string, b: string): number {
 function compareNumber(a: number | null, b: number | null): number {
   if (a === null || b === null) return (a === null ? 1 : 0) - (b === null ? 1 : 0);
   return a - b;
-}
-
-function countOf(findings: readonly Finding[], severity: Severity): number {
-  return findings.filter((finding) => finding.severity === severity).length;
 }

@@ -1,5 +1,11 @@
 import { crossingParameter, nearestParameter } from '../geometry/segment.ts';
 
+/** A point of the drawing, mm. */
+export interface Place {
+  readonly xMm: number;
+  readonly yMm: number;
+}
+
 /** Two points, one on each of two shapes, and how far they lie apart (mm). */
 export interface Closest {
   readonly distanceMm: number;
@@ -11,6 +17,29 @@ export interface Closest {
 
 /** A straight line from (ax, ay) to (bx, by), mm; a point when both are the same. */
 export type Line = readonly [ax: number, ay: number, bx: number, by: number];
+
+/** A point as a line without length. */
+export function pointLine(x: number, y: number): Line {
+  return [x, y, x, y];
+}
+
+/** The straight lines from each point to the next, of x0 y0 x1 y1 … */
+export function linesAlong(points: Float64Array): Line[] {
+  const lines: Line[] = [];
+  for (let i = 0; i + 3 < points.length; i += 2)
+    lines.push([points[i], points[i + 1], points[i + 2], points[i + 3]]);
+  return lines;
+}
+
+/** Left, top, right and bottom of what lies within a reach of a line along the axes. */
+export function boxRound([ax, ay, bx, by]: Line, reach: number): readonly [number, number, number, number] {
+  return [
+    Math.min(ax, bx) - reach,
+    Math.min(ay, by) - reach,
+    Math.max(ax, bx) + reach,
+    Math.max(ay, by) + reach,
+  ];
+}
 
 /** The points of two straight lines nearest to each other: the crossing, or one that is an end of a line. */
 export function closestPoints(one: Line, two: Line): Closest {
@@ -86,6 +115,19 @@ function band(w0: number, dw: number, low: number, high: number, span: number): 
   const t1 = (low - w0) / dw;
   const t2 = (high - w0) / dw;
   return [Math.min(t1, t2), Math.max(t1, t2)];
+}
+
+export function middleOf([x1, y1, x2, y2]: Line): Place {
+  return { xMm: (x1 + x2) / 2, yMm: (y1 + y2) / 2 };
+}
+
+export function lineBetween({ x1, y1, x2, y2 }: Closest): Line {
+  return [x1, y1, x2, y2];
+}
+
+/** The same, told from the second shape. */
+export function turned({ distanceMm, x1, y1, x2, y2 }: Closest): Closest {
+  return { distanceMm, x1: x2, y1: y2, x2: x1, y2: y1 };
 }
 
 export function nearer(one: Closest, two: Closest): Closest {

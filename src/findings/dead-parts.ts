@@ -1,7 +1,7 @@
 import { drivesOf, type PortDrive } from '../solve/drives.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
-import { nearMisses } from './misses.ts';
-import { partsOnDrawing } from './parts.ts';
+import { nearMisses, sidesOf } from './misses.ts';
+import { channelMember, partsOnDrawing } from './parts.ts';
 import { loosePortSet } from './ports.ts';
 import { tipsOf } from './tips.ts';
 
@@ -23,10 +23,10 @@ export interface DeadPart {
  * undriven: held at one pressure all over, cut off from what drives the chip.
  * unheld: only flows are given, cut off from what is held or open.
  */
-export type DeadKind = 'alone' | 'undriven' | 'unheld';
+type DeadKind = 'alone' | 'undriven' | 'unheld';
 
 /** The dead parts of the chip, by number; none while nothing is solved. Cost: linear in the ports and parts. */
-export const deadParts: (context: FindingContext) => readonly DeadPart[] = oncePerContext((context) => {
+export const deadParts = oncePerContext((context): readonly DeadPart[] => {
   const { run, flow } = context;
   if (flow === null) return [];
   const drives = drivesOf(run);
@@ -65,32 +65,23 @@ function stateOf(
   const { portNode } = context.network;
   const ports = partPorts.filter((port) => drives[port].kind !== 'none');
   const holes = new Set(ports.map((port) => portNode[port]));
-  const held = new Set<number>();
-  let hasFlow = false;
-  for (const port of ports) {
-    const drive = drives[port];
-    if (drive.kind === 'pressure') held.add(drive.pressurePa);
-    if (drive.kind === 'flow') hasFlow = true;
+  const given = ports.map((port) => drives[port]);
+  const held = new Set(given.flatMap((drive) => (drive.kind === 'pressure' ? drive.pressurePa : [])));
+  const hasFlow = given.some(({ kind }) => kind === 'flow');
+  return { part, ports, kind: kindOf(), hasFlow, held, planes: planesOf(context, part) };
+
+  function kindOf(): PartState['kind'] {
+    if (holes.size < 2) return holes.size === 0 ? 'stray' : 'alone';
+    if (held.size === 0) return 'unheld';
+    return held.size === 1 && !hasFlow ? 'undriven' : 'live';
   }
-  const kind =
-    ports.length === 0
-      ? 'stray'
-      : holes.size === 1
-        ? 'alone'
-        : held.size === 0
-          ? 'unheld'
-          : held.size === 1 && !hasFlow
-            ? 'undriven'
-            : 'live';
-  return { part, ports, kind, hasFlow, held, planes: planesOf(context, part) };
 }
 
 function planesOf(context: FindingContext, part: number): Set<number> {
-  const { pieces } = context.network.trace.near;
+  const { plane } = context.network.trace.near.pieces;
   const { firstPiece, pieceOf } = partsOnDrawing(context);
-  const planes = new Set<number>();
-  for (let k = firstPiece[part]; k < firstPiece[part + 1]; k++) planes.add(pieces.plane[pieceOf[k]]);
-  return planes;
+  const own = pieceOf.subarray(firstPiece[part], firstPiece[part + 1]);
+  return new Set(own.map((piece) => plane[piece]));
 }
 
 /** A well that no channel comes to is a loose port, and nothing more need be said of it. */
@@ -133,12 +124,9 @@ function isCutOff(context: FindingContext, all: readonly PartState[], one: PartS
 
 /** Parts with an end that stands dead, or at which something is just missed. */
 const standsDead = oncePerContext((context): ReadonlySet<number> => {
-  const { ofCentreline, ofPort } = partsOnDrawing(context);
   const parts = new Set<number>();
-  for (const { ends, kind } of tipsOf(context)) if (kind === 'end') parts.add(ofCentreline[ends[0] >> 1]);
-  for (const { centreline, missed, port } of nearMisses(context)) {
-    parts.add(ofCentreline[centreline]);
-    parts.add(port >= 0 ? ofPort[port] : ofCentreline[missed]);
-  }
+  for (const { ends, kind } of tipsOf(context))
+    if (kind === 'end') parts.add(channelMember(context, ends[0] >> 1).part);
+  for (const miss of nearMisses(context)) for (const { part } of sidesOf(context, miss)) parts.add(part);
   return parts;
 });

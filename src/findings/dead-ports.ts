@@ -16,15 +16,11 @@ export function deadPorts(context: FindingContext): Finding[] {
 }
 
 /** The gap nearest to each dead part; null where there is nothing else, or nothing that closing a gap could lead to. */
-export const gapOfDeadPart: (context: FindingContext) => ReadonlyMap<number, Gap | null> = oncePerContext(
-  (context) =>
-    new Map(
-      deadParts(context).map(({ part }) => [
-        part,
-        hasElsewhere(context, part) ? nearestGap(context, part) : null,
-      ]),
-    ),
-);
+export const gapOfDeadPart = oncePerContext((context): ReadonlyMap<number, Gap | null> => {
+  const gapOf = (part: number): Gap | null =>
+    hasElsewhere(context, part) ? nearestGap(context, part) : null;
+  return new Map(deadParts(context).map(({ part }) => [part, gapOf(part)]));
+});
 
 /** Whether another part has a port that fluid may pass; one without a condition may yet be given one. */
 function hasElsewhere({ run, flow }: FindingContext, part: number): boolean {
@@ -37,21 +33,20 @@ function toDeadPort(context: FindingContext, dead: DeadPart): Finding {
   const first = ports[dead.ports[0]];
   const names = dead.ports.map((port) => ports[port].name);
   const gap = gapOfDeadPart(context).get(dead.part) ?? null;
+  const isolation =
+    gap !== null
+      ? `the nearest gap is ${gapText(gap)}`
+      : hasElsewhere(context, dead.part)
+        ? 'it has no other part near it'
+        : 'the chip has no other such port';
+  const atGap = gap === null || gap.stopsShort === null ? null : gap;
   return toFinding('dead-port', dead.severity, {
-    message: `${whatIsDead(context, dead)}; ${gap === null ? noGapText(context, dead) : `the nearest gap is ${gapText(gap)}`}`,
+    message: `${whatIsDead(context, dead)}; ${isolation}`,
     fix: `${wayOut(context, dead, gap)}; if it is meant to stand still, accept dead-port at ${keyText(first.name)}`,
-    at: gap !== null && gap.stopsShort !== null ? gap : { xMm: first.xMm, yMm: first.yMm },
+    at: atGap ?? first,
     names: [...new Set([...names, ...(gap === null ? [] : [gap.from, gap.to])])],
-    ...(gap !== null && gap.stopsShort !== null ? { mark: toMark(gap) } : {}),
+    mark: atGap?.mark ?? null,
   });
-}
-
-function toMark({ mark: [x1Mm, y1Mm, x2Mm, y2Mm] }: Gap): NonNullable<Finding['mark']> {
-  return { x1Mm, y1Mm, x2Mm, y2Mm };
-}
-
-function noGapText(context: FindingContext, { part }: DeadPart): string {
-  return hasElsewhere(context, part) ? 'it has no other part near it' : 'the chip has no other such port';
 }
 
 /** "125 µm between branch and feed at (12, 5 mm)" */

@@ -1,22 +1,30 @@
 import Flatten from '@flatten-js/core';
-import Flatbush from 'flatbush';
 import { indexRings } from '../chip/rings.ts';
 import type { ChipEdge } from '../chip/types.ts';
+import { type BoxIndex, indexBoxes } from '../geometry/box-index.ts';
 import { type Curve, FINE_MM, finePieces } from '../geometry/curve.ts';
 import { segmentDistance } from '../geometry/segment.ts';
-import { type Closest, closestPoints, type Line } from './closest.ts';
+import {
+  boxRound,
+  type Closest,
+  closestPoints,
+  type Line,
+  linesAlong,
+  middleOf,
+  nearer,
+  type Place,
+  pointLine,
+} from './closest.ts';
 import type { FindingContext } from './context.ts';
-import { lineOf, outlineOf } from './painted.ts';
+import { lineOf, paintedParts } from './painted.ts';
 import { isBelow } from './rule.ts';
 
 /** A channel or well beyond the chip edge, or nearer to it than the margin. */
-export interface EdgeFault {
+export interface EdgeFault extends Place {
   readonly name: string;
   readonly isHole: boolean;
   /** From the painted area or rim to the chip edge, mm; below 0 by how far it lies beyond. */
   readonly gapMm: number;
-  readonly xMm: number;
-  readonly yMm: number;
   readonly mark: Line;
 }
 
@@ -40,10 +48,8 @@ export function findEdgeFaults(context: FindingContext, edge: ChipEdge, marginMm
   const slackOf = (i: number): number => edgeSlackMm + Math.min(FINE_MM, pieces.bulge[i]);
 
   for (const port of chip.ports) {
-    const near = measure(outline, [port.xMm, port.yMm, port.xMm, port.yMm], port.radiusMm);
-    if (isFault(near.gapMm + edgeSlackMm, marginMm)) {
-      faults.push(toFault(port.name, true, near));
-    }
+    const near = measure(outline, pointLine(port.xMm, port.yMm), port.radiusMm);
+    if (isFault(near.gapMm + edgeSlackMm, marginMm)) faults.push({ ...near, name: port.name, isHole: true });
   }
 
   for (let c = 0; c < pieces.centrelineCount; c++) {
@@ -64,11 +70,11 @@ export function findEdgeFaults(context: FindingContext, edge: ChipEdge, marginMm
       if (near !== null && isAtFault) worst = worst === null ? near : worseOf(worst, near);
       // Two pieces that come near the edge and meet far from it are two places.
       if (worst !== null && !(isAtFault && (!inside || isFault(gapAtEnd(i) + slackOf(i), marginMm)))) {
-        faults.push(toFault(name, false, worst));
+        faults.push({ ...worst, name, isHole: false });
         worst = null;
       }
     }
-    if (worst !== null) faults.push(toFault(name, false, worst));
+    if (worst !== null) faults.push({ ...worst, name, isHole: false });
   }
   return faults;
 
@@ -78,19 +84,19 @@ export function findEdgeFaults(context: FindingContext, edge: ChipEdge, marginMm
     const start = beyond(outline, pieces.x1[i], pieces.y1[i], half);
     const end = beyond(outline, pieces.x2[i], pieces.y2[i], half);
     if (Math.abs(start.gapMm - end.gapMm) > ROUNDING_MM) return worseOf(start, end);
-    const x = (pieces.x1[i] + pieces.x2[i]) / 2;
-    const y = (pieces.y1[i] + pieces.y2[i]) / 2;
-    return worseOf(start, { ...beyond(outline, x, y, half), isEven: true });
+    const { xMm, yMm } = middleOf(lineOf(pieces, i));
+    return worseOf(start, { ...beyond(outline, xMm, yMm, half), isEven: true });
   }
 
   function gapAtEnd(i: number): number {
-    return measure(outline, [pieces.x2[i], pieces.y2[i], pieces.x2[i], pieces.y2[i]], pieces.half[i]).gapMm;
+    return measure(outline, pointLine(pieces.x2[i], pieces.y2[i]), pieces.half[i]).gapMm;
   }
 
   /** Nearest to the edge, or farthest beyond it, over the parts of a piece's painted area. */
   function nearOfPiece(i: number): Near {
-    const { lines, radii } = outlineOf(chip, pieces, i);
-    return lines.map((line, k) => measure(outline, line, radii[k])).reduce(worseOf);
+    return paintedParts(chip, pieces, i)
+      .flatMap(({ lines, radius }) => lines.map((line) => measure(outline, line, radius)))
+      .reduce(worseOf);
   }
 }
 
@@ -100,15 +106,11 @@ function worseOf(one: Near, two: Near): Near {
   return two.gapMm < one.gapMm ? two : one;
 }
 
-function toFault(name: string, isHole: boolean, { gapMm, xMm, yMm, mark }: Near): EdgeFault {
-  return { name, isHole, gapMm, xMm, yMm, mark };
-}
-
 function isFault(gapMm: number, marginMm: number): boolean {
   return marginMm > 0 ? isBelow(gapMm, marginMm) : gapMm < -ROUNDING_MM;
 }
 
-interface Near extends Pick<EdgeFault, 'gapMm' | 'xMm' | 'yMm' | 'mark'> {
+interface Near extends Omit<EdgeFault, 'name' | 'isHole'> {
   /** The distance is the same along the whole line; the place is its middle. */
   readonly isEven: boolean;
 }
@@ -131,23 +133,12 @@ interface Outline {
   readonly contains: (x: number, y: number) => boolean;
   readonly sides: readonly Line[];
   /** Boxes of the sides. */
-  readonly index: Flatbush;
+  readonly index: BoxIndex;
 }
 
 function toOutline(rings: readonly Float64Array[]): Outline {
-  const sides: Line[] = [];
-  for (const ring of rings) {
-    for (let k = 0; k + 3 < ring.length; k += 2) {
-      if (ring[k] === ring[k + 2] && ring[k + 1] === ring[k + 3]) continue;
-      sides.push([ring[k], ring[k + 1], ring[k + 2], ring[k + 3]]);
-    }
-  }
-  const index = new Flatbush(Math.max(1, sides.length));
-  for (const [ax, ay, bx, by] of sides) {
-    index.add(Math.min(ax, bx), Math.min(ay, by), Math.max(ax, bx), Math.max(ay, by));
-  }
-  if (sides.length === 0) index.add(0, 0, 0, 0);
-  index.finish();
+  const sides = rings.flatMap(linesAlong).filter(([ax, ay, bx, by]) => ax !== bx || ay !== by);
+  const index = indexBoxes(sides.flatMap((side) => boxRound(side, 0)));
   return { contains: indexRings([rings]).contains, sides, index };
 }
 
@@ -158,15 +149,9 @@ function nearestOnEdge({ index, sides }: Outline, line: Line): Closest {
   const shape = toShape(line);
   const within = distanceOf(shape, sides[some]).distanceMm * (1 + 1e-9);
   let best: Closest | null = null;
-  const hits = index.search(
-    Math.min(ax, bx) - within,
-    Math.min(ay, by) - within,
-    Math.max(ax, bx) + within,
-    Math.max(ay, by) + within,
-  );
-  for (const k of hits.sort((p, q) => p - q)) {
+  for (const k of index.search(...boxRound(line, within)).sort((p, q) => p - q)) {
     const distance = distanceOf(shape, sides[k]);
-    if (best === null || distance.distanceMm < best.distanceMm) best = distance;
+    best = best === null ? distance : nearer(best, distance);
   }
   return best ?? distanceOf(shape, sides[some]);
 }
@@ -185,14 +170,9 @@ function distanceOf(shape: Flatten.Point | Flatten.Segment, [ax, ay, bx, by]: Li
 
 /** Whether a line comes within a distance of the edge. */
 function comesNear({ index, sides }: Outline, withinMm: number, line: Line): boolean {
-  const [ax, ay, bx, by] = line;
-  const hits = index.search(
-    Math.min(ax, bx) - withinMm,
-    Math.min(ay, by) - withinMm,
-    Math.max(ax, bx) + withinMm,
-    Math.max(ay, by) + withinMm,
-  );
-  return hits.some((k) => sides[k] !== undefined && segmentDistance(...line, ...sides[k]) <= withinMm);
+  return index
+    .search(...boxRound(line, withinMm))
+    .some((k) => segmentDistance(...line, ...sides[k]) <= withinMm);
 }
 
 /** Distance of all that lies within a radius of a line from the edge; below 0 by how far it reaches beyond. */
@@ -212,7 +192,7 @@ function measure(outline: Outline, line: Line, radius: number): Near {
   return near({ gapMm: distanceMm, x: x1, y: y1, edgeX: x2, edgeY: y2 }, false);
 
   function signed(x: number, y: number) {
-    const { distanceMm: distance, x2: edgeX, y2: edgeY } = nearestOnEdge(outline, [x, y, x, y]);
+    const { distanceMm: distance, x2: edgeX, y2: edgeY } = nearestOnEdge(outline, pointLine(x, y));
     return { gapMm: outline.contains(x, y) ? distance : -distance, x, y, edgeX, edgeY };
   }
 
@@ -229,10 +209,7 @@ function measure(outline: Outline, line: Line, radius: number): Near {
 const SIDES_TRIED = 32;
 
 function beyond({ index, sides }: Outline, x: number, y: number, radius: number): Near {
-  let best = closestPoints([x, y, x, y], sides[0]);
-  for (const k of index.neighbors(x, y, SIDES_TRIED)) {
-    const closest = closestPoints([x, y, x, y], sides[k]);
-    if (closest.distanceMm < best.distanceMm) best = closest;
-  }
+  const tried = [0, ...index.neighbors(x, y, SIDES_TRIED)];
+  const best = tried.map((k) => closestPoints(pointLine(x, y), sides[k])).reduce(nearer);
   return { gapMm: -best.distanceMm - radius, xMm: x, yMm: y, mark: [x, y, best.x2, best.y2], isEven: false };
 }

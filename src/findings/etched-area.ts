@@ -1,3 +1,4 @@
+import { piecesNear } from '../geometry/near.ts';
 import {
   COARSE_SHARE,
   commonOutline,
@@ -8,16 +9,15 @@ import {
   pieceOutline,
   type Rounds,
 } from '../geometry/outline.ts';
-import type { Pieces } from '../geometry/pieces.ts';
+import { neighbourPiece, type Pieces } from '../geometry/pieces.ts';
 import { isInPieceStrip } from '../geometry/strip.ts';
 import { lieAlong } from '../network/meetings.ts';
-import { closestPoints, type Line } from './closest.ts';
+import type { Line } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
-import { endMeets } from './end-meets.ts';
+import { hasPlaceOn } from './meets.ts';
 import { portsNear } from './near-ports.ts';
-import { lineOf } from './painted.ts';
-import { channelPaths } from './paths.ts';
-import { coveredLength, type Facing, groupStretches } from './stretches.ts';
+import { alongPiece, isLeftOutOn, meetInNode } from './shared-nodes.ts';
+import { coveredLength, extentOf, type Facing, groupStretches, rangeOf, type Wall } from './stretches.ts';
 
 /**
  * One etched area is one network: where two strips of a plane overlap, or two stretches of one more than four widths
@@ -30,49 +30,26 @@ import { coveredLength, type Facing, groupStretches } from './stretches.ts';
  * Cost: linear in the near pairs. Nearly all of them meet in a node at the place where they are nearest; only the rest is
  * looked at in outline.
  */
-export interface UnjoinedArea {
-  readonly pieceA: number;
-  readonly pieceB: number;
-  readonly centrelineA: number;
-  readonly centrelineB: number;
-  /** Extent on centreline A and on B, mm. */
-  readonly fromA: number;
-  readonly toA: number;
-  readonly fromB: number;
-  readonly toB: number;
-  /** Length of overlap along A, mm. */
-  readonly lengthMm: number;
-  /** How far the two overlap, mm; negative, as a wall that is not there. */
-  readonly gapMm: number;
-  /** Across the overlap where it is widest. */
-  readonly mark: Line;
-}
+export const unjoinedAreas = oncePerContext((context): readonly Wall[] => {
+  const { pieces } = context.network.trace.near;
+  const unjoined = overlapsOf(context)
+    .all()
+    .filter(({ joined }) => !joined);
+  const faced = unjoined.map((overlap) => toFaced(pieces, overlap));
+  return groupStretches(faced, ({ bridgeMm }) => bridgeMm).map(toWall);
+});
 
-/** All overlaps that nothing joins, one for each place. */
-export const unjoinedAreas: (context: FindingContext) => readonly UnjoinedArea[] = oncePerContext(
-  (context) => {
-    const unjoined = overlapsOf(context).unjoined();
-    return groupStretches(
-      unjoined.map((overlap) => toFaced(context, overlap)),
-      ({ bridgeMm }) => bridgeMm,
-    ).map(toArea);
-  },
-);
+type Point = readonly [x: number, y: number];
 
 /** Whether a place on piece i and one on piece j lie in one third strip that both pieces are joined to there. */
-export function liesInThird(
-  context: FindingContext,
-  i: number,
-  j: number,
-  onI: readonly [number, number],
-  onJ: readonly [number, number],
-): boolean {
+export function liesInThird(context: FindingContext, i: number, j: number, onI: Point, onJ: Point): boolean {
   return overlapsOf(context).liesInThird(i, j, onI, onJ);
 }
 
 const overlapsOf = oncePerContext((context) => {
   const overlaps = new Overlaps(context);
-  overlaps.passOn(overlaps.withoutNode());
+  overlaps.findOpen();
+  overlaps.passOn(overlaps.all());
   return overlaps;
 });
 
@@ -104,7 +81,7 @@ class Overlaps {
   }
 
   /** The overlaps of near pairs that hold no node of both and reach no well of both. */
-  withoutNode(): readonly Overlap[] {
+  findOpen(): void {
     const { pieces } = this;
     const { pairCount, pairA, pairB, pairDistance } = this.context.network.trace.near;
     for (let k = 0; k < pairCount; k++) {
@@ -114,23 +91,20 @@ class Overlaps {
       if (pairDistance[k] === 0 && !lieAlong(pieces, i, j)) continue;
       // The strip of a piece lies within half a width of it, whatever its ends.
       if (pairDistance[k] > pieces.half[i] + pieces.half[j]) continue;
-      if (isOneStretch(pieces, i, j) || this.meetWhereNearest(i, j) || this.meetAnywhere(i, j)) continue;
+      if (isOneStretch(pieces, i, j) || meetInNode(this.context, i, j)) continue;
       const common = overlapOf(pieces, i, j);
-      if (common === null) {
-        this.open.set(k, null);
-        continue;
-      }
-      if (this.isLeftOutWhole(i, j) || this.meetInWell(i, j, common)) continue;
-      this.open.set(k, { i, j, common, joined: false });
+      if (common === null) this.open.set(k, null);
+      else if (
+        !isLeftOutOn(this.context, i, j) &&
+        !isLeftOutOn(this.context, j, i) &&
+        !this.meetInWell(i, j, common)
+      )
+        this.open.set(k, { i, j, common, joined: false });
     }
-    return this.all();
   }
 
-  unjoined(): readonly Overlap[] {
-    return this.all().filter(({ joined }) => !joined);
-  }
-
-  private all(): readonly Overlap[] {
+  /** Those that square ends do not keep apart. */
+  all(): readonly Overlap[] {
     return [...this.open.values()].filter((overlap) => overlap !== null);
   }
 
@@ -148,7 +122,7 @@ class Overlaps {
     }
   }
 
-  liesInThird(i: number, j: number, onI: readonly [number, number], onJ: readonly [number, number]): boolean {
+  liesInThird(i: number, j: number, onI: Point, onJ: Point): boolean {
     const { pieces, slackMm } = this;
     return this.thirdsOf(i, j).some(
       (k) =>
@@ -180,16 +154,19 @@ class Overlaps {
 
   /** Pieces that may overlap both: what goes on from them, and what comes near the one of them that has fewer neighbours. */
   private thirdsOf(i: number, j: number): number[] {
-    const { firstPair, pairOf, pairA, pairB } = this.context.network.trace.near;
-    const thirds = [...besides(this.pieces, i), ...besides(this.pieces, j)].filter((k) => k !== i && k !== j);
-    const fewer = firstPair[i + 1] - firstPair[i] <= firstPair[j + 1] - firstPair[j] ? i : j;
-    const last = Math.min(firstPair[fewer + 1], firstPair[fewer] + MOST_NEIGHBOURS);
-    for (let m = firstPair[fewer]; m < last; m++) {
-      const pair = pairOf[m];
-      const k = pairA[pair] === fewer ? pairB[pair] : pairA[pair];
-      if (k !== i && k !== j) thirds.push(k);
-    }
-    return thirds;
+    const { near } = this.context.network.trace;
+    const fewer = this.fewer(i, j);
+    return [
+      ...besides(this.pieces, i),
+      ...besides(this.pieces, j),
+      ...piecesNear(near, fewer, MOST_NEIGHBOURS),
+    ].filter((k) => k !== i && k !== j);
+  }
+
+  /** The one of two pieces that has fewer neighbours. */
+  private fewer(i: number, j: number): number {
+    const { firstPair } = this.context.network.trace.near;
+    return firstPair[i + 1] - firstPair[i] <= firstPair[j + 1] - firstPair[j] ? i : j;
   }
 
   private isJoined(i: number, k: number): boolean {
@@ -205,7 +182,8 @@ class Overlaps {
   /** Index of the near pair of two pieces, −1 when they are none. */
   private pairOf(i: number, j: number): number {
     const { firstPair, pairOf, pairA, pairB } = this.context.network.trace.near;
-    const [own, other] = firstPair[i + 1] - firstPair[i] <= firstPair[j + 1] - firstPair[j] ? [i, j] : [j, i];
+    const own = this.fewer(i, j);
+    const other = own === i ? j : i;
     for (let m = firstPair[own]; m < firstPair[own + 1]; m++) {
       const pair = pairOf[m];
       if (pairA[pair] === other || pairB[pair] === other) return pair;
@@ -213,119 +191,22 @@ class Overlaps {
     return -1;
   }
 
-  /** Whether a node of both lies where the two pieces are nearest: at nearly every crossing and branch. */
-  private meetWhereNearest(i: number, j: number): boolean {
-    const { pieces } = this;
-    const { x1, y1, x2, y2 } = closestPoints(lineOf(pieces, i), lineOf(pieces, j));
-    const s = pieces.start[i] + Math.hypot(x1 - pieces.x1[i], y1 - pieces.y1[i]);
-    const t = pieces.start[j] + Math.hypot(x2 - pieces.x1[j], y2 - pieces.y1[j]);
-    return this.meetBetween(i, s, s, j) || this.meetBetween(j, t, t, i);
-  }
-
-  private meetAnywhere(i: number, j: number): boolean {
-    const { start, length } = this.pieces;
-    return (
-      this.meetBetween(i, start[i], start[i] + length[i], j) ||
-      this.meetBetween(j, start[j], start[j] + length[j], i)
-    );
-  }
-
-  /**
-   * Whether a node on piece i between two positions lies inside the strip of piece j and has a place on j's centreline
-   * near there. An end that was carried on stands where it was drawn.
-   */
-  private meetBetween(i: number, from: number, to: number, j: number): boolean {
-    const { pieces, slackMm } = this;
-    const { arcFrom, arcTo, firstArc } = this.context.network.trace;
-    const c = pieces.centreline[i];
-    const low = from <= slackMm ? Number.NEGATIVE_INFINITY : from - slackMm;
-    const high = to >= pieces.centrelineLength[c] - slackMm ? Number.POSITIVE_INFINITY : to + slackMm;
-    for (let a = this.firstArcUpTo(c, low); a < firstArc[c + 1] && arcFrom[a] <= high; a++) {
-      if (arcFrom[a] >= low && this.meetAtSide(2 * a, arcFrom[a], i, j)) return true;
-      if (arcTo[a] <= high && this.meetAtSide(2 * a + 1, arcTo[a], i, j)) return true;
-    }
-    return false;
-  }
-
-  /** The first arc of a centreline that reaches a position. */
-  private firstArcUpTo(c: number, s: number): number {
-    const { firstArc, arcTo } = this.context.network.trace;
-    let low = firstArc[c];
-    let high = firstArc[c + 1];
-    while (low < high) {
-      const middle = (low + high) >> 1;
-      if (arcTo[middle] < s) low = middle + 1;
-      else high = middle;
-    }
-    return low;
-  }
-
-  private meetAtSide(side: number, s: number, i: number, j: number): boolean {
-    const { pieces, slackMm } = this;
-    const { arcFrom, arcTo, firstArc } = this.context.network.trace;
-    const along = Math.min(pieces.centrelineLength[pieces.centreline[i]], Math.max(0, s)) - pieces.start[i];
-    if (along < -slackMm || along > pieces.length[i] + slackMm) return false;
-    const share = along / pieces.length[i];
-    const x = pieces.x1[i] + share * (pieces.x2[i] - pieces.x1[i]);
-    const y = pieces.y1[i] + share * (pieces.y2[i] - pieces.y1[i]);
-    if (!isInPieceStrip(pieces, j, x, y, slackMm, null)) return false;
-    const c = pieces.centreline[j];
-    const t = pieces.start[j] + alongPiece(pieces, j, x, y);
-    const nearMm = 4 * (pieces.half[i] + pieces.half[j]);
-    const node = this.nodeAt(side);
-    for (let a = this.firstArcUpTo(c, t - nearMm); a < firstArc[c + 1] && arcFrom[a] <= t + nearMm; a++) {
-      if (arcFrom[a] >= t - nearMm && 2 * a !== side && this.nodeAt(2 * a) === node) return true;
-      if (arcTo[a] <= t + nearMm && 2 * a + 1 !== side && this.nodeAt(2 * a + 1) === node) return true;
-    }
-    return false;
-  }
-
-  /** Node at an arc's start (even side) or end. Rule 7 takes away nodes where two arcs of one reach meet: a number of their own. */
-  private nodeAt(side: number): number {
-    const { arcNodeFrom, arcNodeTo } = this.context.network.trace;
-    const node = (side & 1) === 0 ? arcNodeFrom[side >> 1] : arcNodeTo[side >> 1];
-    return node >= 0 ? node : channelPaths(this.context).sideVertex[side];
-  }
-
-  /** A stroke that the joining rules left out whole has no node: it is joined where it was to be carried on. */
-  private isLeftOutWhole(i: number, j: number): boolean {
-    return this.isLeftOutOf(i, j) || this.isLeftOutOf(j, i);
-  }
-
-  private isLeftOutOf(i: number, j: number): boolean {
-    const { pieces, slackMm } = this;
-    const { firstArc } = this.context.network.trace;
-    const c = pieces.centreline[i];
-    if (firstArc[c + 1] > firstArc[c]) return false;
-    return [2 * c, 2 * c + 1].some((end) => {
-      if (!endMeets(this.context.network, end, pieces.centreline[j])) return false;
-      const piece = end === 2 * c ? pieces.firstPiece[c] : pieces.firstPiece[c + 1] - 1;
-      if (piece !== i) return false;
-      const [x, y] = end === 2 * c ? [pieces.x1[i], pieces.y1[i]] : [pieces.x2[i], pieces.y2[i]];
-      return isInPieceStrip(pieces, j, x, y, slackMm, null);
-    });
-  }
-
   private meetInWell(i: number, j: number, common: Outline): boolean {
     const { chip, network } = this.context;
+    const { centreline } = this.pieces;
     const { x, y } = middleOfOutline(common);
     let reach = 0;
     for (let k = 0; k < common.length; k += 2)
       reach = Math.max(reach, Math.hypot(common[k] - x, common[k + 1] - y));
     return portsNear(this.context, x, y, reach + this.slackMm).some((p) => {
       const { xMm, yMm, radiusMm } = chip.ports[p];
-      if (distanceToOutline(common, xMm, yMm) > radiusMm + this.slackMm) return false;
       const node = network.portNode[p];
-      return this.hasPlace(node, i) && this.hasPlace(node, j);
+      return (
+        distanceToOutline(common, xMm, yMm) <= radiusMm + this.slackMm &&
+        hasPlaceOn(network, node, centreline[i]) &&
+        hasPlaceOn(network, node, centreline[j])
+      );
     });
-  }
-
-  private hasPlace(node: number, piece: number): boolean {
-    const { firstPlace, placeCentreline } = this.context.network.trace;
-    for (let k = firstPlace[node]; k < firstPlace[node + 1]; k++) {
-      if (placeCentreline[k] === this.pieces.centreline[piece]) return true;
-    }
-    return false;
   }
 }
 
@@ -372,23 +253,7 @@ function reachOnto(pieces: Pieces, i: number, j: number): readonly [number, numb
 
 /** The pieces before and after one on its centreline. */
 function besides(pieces: Pieces, i: number): number[] {
-  const c = pieces.centreline[i];
-  const first = pieces.firstPiece[c];
-  const last = pieces.firstPiece[c + 1] - 1;
-  const closed = pieces.centrelineClosed[c] === 1;
-  const found: number[] = [];
-  if (i > first) found.push(i - 1);
-  else if (closed && last > first) found.push(last);
-  if (i < last) found.push(i + 1);
-  else if (closed && last > first) found.push(first);
-  return found;
-}
-
-/** Distance along a piece, within it, of the place nearest to a point. */
-function alongPiece(pieces: Pieces, i: number, x: number, y: number): number {
-  const dx = (pieces.x2[i] - pieces.x1[i]) / pieces.length[i];
-  const dy = (pieces.y2[i] - pieces.y1[i]) / pieces.length[i];
-  return Math.min(pieces.length[i], Math.max(0, (x - pieces.x1[i]) * dx + (y - pieces.y1[i]) * dy));
+  return [neighbourPiece(pieces, i, -1), neighbourPiece(pieces, i, 1)].filter((k) => k >= 0);
 }
 
 /** An overlap as stretches of its two centrelines that face each other. */
@@ -399,8 +264,7 @@ interface Faced extends Facing {
   readonly bridgeMm: number;
 }
 
-function toFaced({ network }: FindingContext, overlap: Overlap): Faced {
-  const { pieces } = network.trace.near;
+function toFaced(pieces: Pieces, overlap: Overlap): Faced {
   const { i, j } = overlap;
   const common = commonIn(pieces, i, j, 'fine');
   const { widthMm, nx, ny } = leastWidth(common);
@@ -423,36 +287,16 @@ function toFaced({ network }: FindingContext, overlap: Overlap): Faced {
 }
 
 function extentOn(pieces: Pieces, i: number, outline: Outline): readonly [number, number] {
-  let low = Number.POSITIVE_INFINITY;
-  let high = Number.NEGATIVE_INFINITY;
-  for (let k = 0; k < outline.length; k += 2) {
-    const s = pieces.start[i] + alongPiece(pieces, i, outline[k], outline[k + 1]);
-    low = Math.min(low, s);
-    high = Math.max(high, s);
-  }
-  return [low, high];
+  const corners = outline.flatMap((x, k) => (k % 2 === 0 ? [[x, outline[k + 1]]] : []));
+  return rangeOf(corners.map(([x, y]) => pieces.start[i] + alongPiece(pieces, i, x, y)));
 }
 
-function toArea(group: readonly Faced[]): UnjoinedArea {
-  let widest = group[0];
-  let toA = Number.NEGATIVE_INFINITY;
-  let fromB = Number.POSITIVE_INFINITY;
-  let toB = Number.NEGATIVE_INFINITY;
-  for (const faced of group) {
-    if (faced.widthMm > widest.widthMm) widest = faced;
-    toA = Math.max(toA, faced.to);
-    fromB = Math.min(fromB, faced.otherFrom, faced.otherTo);
-    toB = Math.max(toB, faced.otherFrom, faced.otherTo);
-  }
+function toWall(group: readonly Faced[]): Wall {
+  const widest = group.reduce((most, faced) => (faced.widthMm > most.widthMm ? faced : most));
   return {
     pieceA: widest.overlap.i,
     pieceB: widest.overlap.j,
-    centrelineA: widest.a,
-    centrelineB: widest.b,
-    fromA: group[0].from,
-    toA,
-    fromB,
-    toB,
+    ...extentOf(group),
     lengthMm: coveredLength(group.map(({ from, to }) => [from, to])),
     gapMm: -widest.widthMm,
     mark: widest.mark,

@@ -1,9 +1,10 @@
-import { reachName } from '../network/names.ts';
+import type { PortRun } from '../chip/types.ts';
+import { largestMagnitude } from '../runsheet/shown.ts';
 import type { FindingContext } from './context.ts';
 import { deadPartAt } from './dead-parts.ts';
-import { middleOfReach, othersText, reachesOf, reachNames, worstReach } from './reaches.ts';
+import { reachesAtNodes } from './openings.ts';
+import { perChannel } from './reaches.ts';
 import { found, isBelow, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
-import type { Finding } from './types.ts';
 import { showFor } from './words.ts';
 
 /** Does fluid go where it is meant to, and does it go everywhere. */
@@ -20,29 +21,24 @@ const STAGNANT_SHARE = 1e-3;
  * whose ports have no way to others, dead-port speaks.
  */
 function stagnant(context: FindingContext): RuleOutcome {
-  const { network, flow, chip } = context;
+  const { network, flow } = context;
   if (flow === null) return notRun('stagnant', 'nothing was solved');
   const isDead = onTheWayToADeadEnd(context);
   for (let reach = 0; reach < network.reachCount; reach++) {
     if (deadPartAt(context, flow.nodePart[network.reachFrom[reach]]) !== undefined) isDead[reach] = 1;
   }
-  const flows: number[] = [];
-  let largest = 0;
-  for (let reach = 0; reach < network.reachCount; reach++) {
-    const magnitude = Math.abs(flow.reachFlow[reach]);
-    if (isDead[reach] === 1 || Number.isNaN(magnitude)) continue;
-    flows.push(magnitude);
-    largest = Math.max(largest, magnitude);
-  }
+  const flows = flow.reachFlow
+    .filter((one, reach) => isDead[reach] !== 1 && !Number.isNaN(one))
+    .map(Math.abs);
+  const largest = largestMagnitude(flows);
   if (flows.length === 0) return notRun('stagnant', 'no flow in the chip is known');
   if (largest === 0) return notRun('stagnant', 'nothing flows anywhere in the chip');
   // What stands still does not count: where most of the chip does, it would make nought the measure of the rest.
-  const median = medianOf(Float64Array.from(flows.filter((one) => one > NO_FLOW_SHARE * largest)));
+  const median = medianOf(flows.filter((one) => one > NO_FLOW_SHARE * largest));
   const show = showFor(context);
-  const findings: Finding[] = [];
-  chip.channels.forEach((_, c) => {
-    const worst = worstReach(
-      reachesOf(context, c),
+  return found(
+    perChannel(
+      context,
       (reach) => {
         const magnitude = Math.abs(flow.reachFlow[reach]);
         if (isDead[reach] === 1 || Number.isNaN(magnitude)) return null;
@@ -50,22 +46,19 @@ function stagnant(context: FindingContext): RuleOutcome {
       },
       // what is left of a balanced flow is rounding: all of it is equally still
       (magnitude) => 1 / (magnitude / median + STAGNANT_SHARE),
-    );
-    if (worst === null) return;
-    const name = reachName(network, worst.reach);
-    const share = worst.fault / median;
-    const flowText = share < NO_FLOW_SHARE ? 'practically nothing' : show.text('flow', worst.fault);
-    findings.push(
-      toFinding('stagnant', 'caution', {
-        message: `${flowText} flows through ${name}, less than a thousandth of the chip's median flow (${show.text('flow', median)})${othersText(context, worst)}: what is in there stays there`,
-        fix: `if ${name} is meant to be swept, set its two ends to different pressures: move one junction along, or make its neighbours unequal; if it only balances, leave it`,
-        at: middleOfReach(network, worst.reach),
-        names: reachNames(context, worst),
-        measure: { value: share, limit: STAGNANT_SHARE, unit: '' },
-      }),
-    );
-  });
-  return found(findings);
+      (magnitude, { name, others, place, names }) => {
+        const share = magnitude / median;
+        const flowText = share < NO_FLOW_SHARE ? 'practically nothing' : show.text('flow', magnitude);
+        return toFinding('stagnant', 'caution', {
+          message: `${flowText} flows through ${name}, less than a thousandth of the chip's median flow (${show.text('flow', median)})${others}: what is in there stays there`,
+          fix: `if ${name} is meant to be swept, set its two ends to different pressures: move one junction along, or make its neighbours unequal; if it only balances, leave it`,
+          at: place,
+          names,
+          measure: { value: share, limit: STAGNANT_SHARE, unit: '' },
+        });
+      },
+    ),
+  );
 }
 
 /** Below this share of the median, and of the largest, a flow is what rounding left of a balance. */
@@ -75,20 +68,10 @@ const NO_FLOW_SHARE = 1e-9;
  * 1 for each reach from which every way on ends dead: nodes that are no driving port and have one reach left are taken
  * off, with that reach, until there are none.
  */
-function onTheWayToADeadEnd({ network, run }: FindingContext): Uint8Array {
+function onTheWayToADeadEnd(context: FindingContext): Uint8Array {
+  const { network, run } = context;
   const { nodeCount, reachCount, reachFrom, reachTo, nodePort } = network;
-  const first = new Int32Array(nodeCount + 1);
-  for (let r = 0; r < reachCount; r++) {
-    first[reachFrom[r] + 1]++;
-    first[reachTo[r] + 1]++;
-  }
-  for (let n = 0; n < nodeCount; n++) first[n + 1] += first[n];
-  const fill = first.slice(0, nodeCount);
-  const reachesAt = new Int32Array(2 * reachCount);
-  for (let r = 0; r < reachCount; r++) {
-    reachesAt[fill[reachFrom[r]]++] = r;
-    reachesAt[fill[reachTo[r]]++] = r;
-  }
+  const { first, item } = reachesAtNodes(context);
   const left = new Int32Array(nodeCount);
   for (let n = 0; n < nodeCount; n++) left[n] = first[n + 1] - first[n];
   const isDead = new Uint8Array(reachCount);
@@ -102,7 +85,7 @@ function onTheWayToADeadEnd({ network, run }: FindingContext): Uint8Array {
   for (let n = 0; n < nodeCount; n++) if (isLeaf(n)) leaves.push(n);
   for (let node = leaves.pop(); node !== undefined; node = leaves.pop()) {
     for (let k = first[node]; k < first[node + 1]; k++) {
-      const reach = reachesAt[k];
+      const reach = item[k] >> 1;
       if (isDead[reach] === 1) continue;
       isDead[reach] = 1;
       for (const end of [reachFrom[reach], reachTo[reach]]) {
@@ -135,20 +118,17 @@ function backflow(context: FindingContext): RuleOutcome {
   if (!chip.ports.some((_, p) => isAsked(p))) {
     return notRun('backflow', 'the flow at no port that says what it is for is known');
   }
-  let largest = 0;
-  for (const value of flow.portFlow) if (Math.abs(value) > largest) largest = Math.abs(value);
+  const largest = largestMagnitude(flow.portFlow);
   const show = showFor(context);
-  const findings: Finding[] = [];
-  chip.ports.forEach(({ name, xMm, yMm }, p) => {
-    if (!isAsked(p)) return;
+  const findings = chip.ports.flatMap((port, p) => {
+    const { name } = port;
     const { condition, expect } = run.ports[p];
     const into = flow.portFlow[p];
     const against = wants[p] === 'in' ? -into : into;
-    if (!(against > NO_DIRECTION_SHARE * largest)) return;
-    const isDriven = condition.kind === 'pressure' || condition.kind === 'head' || condition.kind === 'flow';
-    const isInletTakingBack = isDriven && wants[p] === 'in';
+    if (!isAsked(p) || !(against > NO_DIRECTION_SHARE * largest)) return [];
+    const isInletTakingBack = isDriven(condition) && wants[p] === 'in';
     const meant = expect === null ? 'an open outlet' : wants[p] === 'in' ? 'an inlet' : 'an outlet';
-    findings.push(
+    return [
       toFinding('backflow', isInletTakingBack ? 'blocker' : 'caution', {
         message: `port ${name} is ${meant}, but ${show.text('flow', against)} flows ${into < 0 ? 'out of' : 'into'} the chip there`,
         fix: isInletTakingBack
@@ -158,25 +138,23 @@ function backflow(context: FindingContext): RuleOutcome {
           : wants[p] === 'in'
             ? `write expect: out for ${name} if it is an outlet, or raise it above the pressure at its first junction`
             : `write expect: in for ${name} if fluid is meant to be drawn in there, or raise the pressure at its junction above it`,
-        at: { xMm, yMm },
+        at: port,
         names: [name],
         measure: { value: into, limit: 0, unit: 'm³/s' },
       }),
-    );
+    ];
   });
   return found(findings);
 }
 
+function isDriven({ kind }: PortRun['condition']): boolean {
+  return kind === 'pressure' || kind === 'head' || kind === 'flow';
+}
+
 /** What each port is for: as the run sheet says; else an open well is an outlet, unless the chip is only sucked at. */
 function expectations({ run, flow }: FindingContext): readonly ('in' | 'out' | null)[] {
-  let driving = 0;
-  let sucking = 0;
-  run.ports.forEach(({ condition: { kind } }, p) => {
-    if (kind !== 'pressure' && kind !== 'head' && kind !== 'flow') return;
-    driving++;
-    if (flow !== null && flow.portFlow[p] <= 0) sucking++;
-  });
-  const isSuckedOnly = sucking === driving;
+  const driven = run.ports.flatMap(({ condition }, p) => (isDriven(condition) ? [p] : []));
+  const isSuckedOnly = driven.every((p) => flow !== null && flow.portFlow[p] <= 0);
   return run.ports.map(({ expect, condition }) => {
     if (expect !== null) return expect;
     return condition.kind === 'open' && !isSuckedOnly ? 'out' : null;

@@ -8,11 +8,13 @@
  * Ends are open: a circle's middle may lie on an end, but not beyond; a cell's middle that does counts where it is nearest.
  * Cost: about the number of pillars times the logarithm of the precision.
  */
-import Flatbush from 'flatbush';
+import FlatQueue from 'flatqueue';
 import { indexRings } from '../chip/rings.ts';
 import type { Channel, Obstacle } from '../chip/types.ts';
+import { indexBoxes } from '../geometry/box-index.ts';
 import { distanceToSegment } from '../geometry/segment.ts';
 import type { Centreline } from '../layout/types.ts';
+import { boxRound, type Line, linesAlong, type Place } from './closest.ts';
 
 type Circle = NonNullable<Obstacle['circle']>;
 
@@ -23,11 +25,9 @@ const PRECISION = 1e-3;
 const MOST_CELLS = 300_000;
 
 /** The widest span and the middle of its circle. */
-export interface FreeSpan {
+export interface FreeSpan extends Place {
   /** At most the channel's width. */
   readonly spanMm: number;
-  readonly xMm: number;
-  readonly yMm: number;
 }
 
 export function freeSpan(
@@ -36,29 +36,29 @@ export function freeSpan(
   wells: readonly Circle[] = [],
 ): FreeSpan {
   const half = drawnWidthMm / 2;
-  const pillarIndex = indexPillars(pillars, wells);
-  const strip = indexStrip(centrelines);
+  const toPillar = distanceToPillars(pillars, wells);
+  const nearest = nearestInStrip(centrelines);
   let best = 0;
   let [xMm, yMm] = [Number.NaN, Number.NaN];
   /** Room at the point, or at the one nearest to it that is not beyond an open end. Keeps the best. */
   const roomAt = (x: number, y: number): number => {
     // A first cell reaches 2√2 halves of the width from its middle.
-    const nearest = strip.nearest(x, y, 4 * half);
-    if (nearest === null) return -Infinity;
-    const toWall = half - nearest.distance;
+    const place = nearest(x, y, 4 * half);
+    if (place === null) return -Infinity;
+    const toWall = half - place.distance;
     if (toWall <= 0) return toWall;
-    const room = Math.min(toWall, pillarIndex.distance(nearest.x, nearest.y, toWall));
+    const room = Math.min(toWall, toPillar(place.x, place.y, toWall));
     if (room > best) {
       best = room;
-      [xMm, yMm] = [nearest.x, nearest.y];
+      [xMm, yMm] = [place.x, place.y];
     }
     return room;
   };
-  const heap = new Cells();
+  // the largest bound first
+  const heap = new FlatQueue<Cell>();
   for (const { points } of centrelines) {
     // Cells as wide as the channel along the centreline hold every point within half of it.
-    for (let i = 0; i + 3 < points.length; i += 2) {
-      const [x1, y1, x2, y2] = [points[i], points[i + 1], points[i + 2], points[i + 3]];
+    for (const [x1, y1, x2, y2] of linesAlong(points)) {
       const count = Math.max(1, Math.ceil(Math.hypot(x2 - x1, y2 - y1) / drawnWidthMm));
       for (let k = 0; k < count; k++) {
         const t = (k + 0.5) / count;
@@ -68,7 +68,7 @@ export function freeSpan(
     }
   }
   let looked = 0;
-  for (let cell = heap.pop(); cell !== null; cell = heap.pop()) {
+  for (let cell = heap.pop(); cell !== undefined; cell = heap.pop()) {
     if (cell.bound <= best + (PRECISION * drawnWidthMm) / 2) break;
     if (++looked > MOST_CELLS) return { spanMm: Math.min(drawnWidthMm, 2 * cell.bound), xMm, yMm };
     const quarter = cell.half / 2;
@@ -80,14 +80,12 @@ export function freeSpan(
   function add(x: number, y: number, halfSide: number): void {
     const room = roomAt(x, y);
     const bound = Math.min(half, room + halfSide * Math.SQRT2);
-    if (bound > best + (PRECISION * drawnWidthMm) / 2) heap.push({ x, y, half: halfSide, bound });
+    if (bound > best + (PRECISION * drawnWidthMm) / 2) heap.push({ x, y, half: halfSide, bound }, -bound);
   }
 }
 
-interface Distances {
-  /** Distance to the nearest, at least when it is below `within`. */
-  readonly distance: (x: number, y: number, within: number) => number;
-}
+/** Distance of a point to the nearest, at least when it is below `within`. */
+type Distance = (x: number, y: number, within: number) => number;
 
 interface Nearest {
   /** The point itself, or moved back on to the square end that it lies beyond. */
@@ -97,107 +95,81 @@ interface Nearest {
   readonly distance: number;
 }
 
-function indexStrip(lines: readonly Centreline[]): {
-  readonly nearest: (x: number, y: number, within: number) => Nearest | null;
-} {
-  const edges: Edge[] = [];
-  /** 1 where the edge's first point is an open end, 2 where its second is. */
-  const ends: number[] = [];
-  for (const { points, closed } of lines) {
-    const own = edgesOf(points);
-    for (const [i, edge] of own.entries()) {
-      edges.push(edge);
-      ends.push(closed ? 0 : (i === 0 ? 1 : 0) + (i === own.length - 1 ? 2 : 0));
+function nearestInStrip(
+  lines: readonly Centreline[],
+): (x: number, y: number, within: number) => Nearest | null {
+  const pieces = lines.flatMap(({ points, closed }) =>
+    linesAlong(points).map((edge, i, { length }) => ({
+      edge,
+      startsOpen: !closed && i === 0,
+      endsOpen: !closed && i === length - 1,
+    })),
+  );
+  const near = edgesNear(pieces.map(({ edge }) => edge));
+  return (x, y, within) => {
+    let best: Nearest | null = null;
+    for (const i of near(x, y, within)) {
+      const one = nearestOnPiece(x, y, pieces[i]);
+      if (best === null || one.distance < best.distance) best = one;
     }
-  }
-  const near = edgesNear(edges);
-  return {
-    nearest: (x, y, within) => {
-      let best: Nearest | null = null;
-      for (const i of near(x, y, within)) {
-        const one = nearestOnPiece(x, y, edges[i], ends[i]);
-        if (best === null || one.distance < best.distance) best = one;
-      }
-      return best;
-    },
+    return best;
   };
 }
 
-function nearestOnPiece(x: number, y: number, [x1, y1, x2, y2]: Edge, ends: number): Nearest {
+/** A straight piece of a centreline, and whether its first or second point is an open end. */
+interface StripPiece {
+  readonly edge: Line;
+  readonly startsOpen: boolean;
+  readonly endsOpen: boolean;
+}
+
+function nearestOnPiece(x: number, y: number, { edge, startsOpen, endsOpen }: StripPiece): Nearest {
+  const [x1, y1, x2, y2] = edge;
   const length = Math.hypot(x2 - x1, y2 - y1);
   const [ux, uy] = [(x2 - x1) / length, (y2 - y1) / length];
   const along = (x - x1) * ux + (y - y1) * uy;
   const across = Math.abs((y - y1) * ux - (x - x1) * uy);
-  if (along < 0 && (ends & 1) !== 0) return { x: x - along * ux, y: y - along * uy, distance: across };
+  if (along < 0 && startsOpen) return { x: x - along * ux, y: y - along * uy, distance: across };
   const beyond = along - length;
-  if (beyond > 0 && (ends & 2) !== 0) return { x: x - beyond * ux, y: y - beyond * uy, distance: across };
+  if (beyond > 0 && endsOpen) return { x: x - beyond * ux, y: y - beyond * uy, distance: across };
   return { x, y, distance: along < 0 || beyond > 0 ? Math.hypot(Math.max(-along, beyond), across) : across };
 }
 
 /** Negative inside a pillar, which is no room either. */
-function indexPillars(pillars: readonly Obstacle[], wells: readonly Circle[]): Distances {
+function distanceToPillars(pillars: readonly Obstacle[], wells: readonly Circle[]): Distance {
   const circles = [...pillars.flatMap(({ circle }) => circle ?? []), ...wells];
-  const edges = indexShapes(pillars.flatMap(({ circle, rings }) => (circle === null ? [rings] : [])));
-  if (circles.length === 0) return edges;
-  const index = new Flatbush(circles.length);
-  for (const { xMm, yMm, radiusMm } of circles) {
-    index.add(xMm - radiusMm, yMm - radiusMm, xMm + radiusMm, yMm + radiusMm);
-  }
-  index.finish();
-  return {
-    distance: (x, y, within) => {
-      const least = edges.distance(x, y, within);
-      // Most pillars are near: a window that grows finds the nearest without looking at all within.
-      for (let reach = within / 16; ; reach = Math.min(within, 2 * reach)) {
-        let nearest = least;
-        for (const i of index.search(x - reach, y - reach, x + reach, y + reach)) {
-          const { xMm, yMm, radiusMm } = circles[i];
-          nearest = Math.min(nearest, Math.hypot(x - xMm, y - yMm) - radiusMm);
-        }
-        if (nearest <= reach || reach >= within) return nearest;
+  const toShape = distanceToShapes(pillars.flatMap(({ circle, rings }) => (circle === null ? [rings] : [])));
+  if (circles.length === 0) return toShape;
+  const index = indexBoxes(
+    circles.flatMap(({ xMm, yMm, radiusMm: r }) => [xMm - r, yMm - r, xMm + r, yMm + r]),
+  );
+  return (x, y, within) => {
+    const least = toShape(x, y, within);
+    // Most pillars are near: a window that grows finds the nearest without looking at all within.
+    for (let reach = within / 16; ; reach = Math.min(within, 2 * reach)) {
+      let nearest = least;
+      for (const i of index.search(x - reach, y - reach, x + reach, y + reach)) {
+        const { xMm, yMm, radiusMm } = circles[i];
+        nearest = Math.min(nearest, Math.hypot(x - xMm, y - yMm) - radiusMm);
       }
-    },
+      if (nearest <= reach || reach >= within) return nearest;
+    }
   };
 }
 
-function indexShapes(shapes: readonly (readonly Float64Array[])[]): Distances {
-  const edges = indexEdges(shapes.flatMap((rings) => rings.flatMap(edgesOf)));
-  const areas = indexRings(shapes);
-  return {
-    distance: (x, y, within) => {
-      const distance = edges.distance(x, y, within);
-      return areas.groupsRound(x, y).length > 0 ? -Math.min(distance, within) : distance;
-    },
-  };
-}
-
-type Edge = readonly [number, number, number, number];
-
-function edgesOf(points: Float64Array): Edge[] {
-  const edges: Edge[] = [];
-  for (let i = 0; i + 3 < points.length; i += 2) {
-    edges.push([points[i], points[i + 1], points[i + 2], points[i + 3]]);
-  }
-  return edges;
-}
-
-function indexEdges(edges: readonly Edge[]): Distances {
+function distanceToShapes(shapes: readonly (readonly Float64Array[])[]): Distance {
+  const edges = shapes.flatMap((rings) => rings.flatMap(linesAlong));
   const near = edgesNear(edges);
-  return {
-    distance: (x, y, within) => {
-      let nearest = Infinity;
-      for (const i of near(x, y, within)) nearest = Math.min(nearest, distanceToSegment(x, y, ...edges[i]));
-      return nearest;
-    },
+  const areas = indexRings(shapes);
+  return (x, y, within) => {
+    let nearest = Infinity;
+    for (const i of near(x, y, within)) nearest = Math.min(nearest, distanceToSegment(x, y, ...edges[i]));
+    return areas.groupsRound(x, y).length > 0 ? -Math.min(nearest, within) : nearest;
   };
 }
 
-function edgesNear(edges: readonly Edge[]): (x: number, y: number, within: number) => readonly number[] {
-  if (edges.length === 0) return () => [];
-  const index = new Flatbush(edges.length);
-  for (const [x1, y1, x2, y2] of edges)
-    index.add(Math.min(x1, x2), Math.min(y1, y2), Math.max(x1, x2), Math.max(y1, y2));
-  index.finish();
+function edgesNear(edges: readonly Line[]): (x: number, y: number, within: number) => readonly number[] {
+  const index = indexBoxes(edges.flatMap((edge) => boxRound(edge, 0)));
   return (x, y, within) => index.search(x - within, y - within, x + within, y + within);
 }
 
@@ -208,40 +180,4 @@ interface Cell {
   readonly half: number;
   /** No circle with its middle in the cell has a larger radius. */
   readonly bound: number;
-}
-
-/** A binary heap, the largest bound first. */
-class Cells {
-  readonly #cells: Cell[] = [];
-
-  push(cell: Cell): void {
-    const cells = this.#cells;
-    let i = cells.push(cell) - 1;
-    while (i > 0) {
-      const parent = (i - 1) >> 1;
-      if (cells[parent].bound >= cell.bound) break;
-      cells[i] = cells[parent];
-      i = parent;
-    }
-    cells[i] = cell;
-  }
-
-  pop(): Cell | null {
-    const cells = this.#cells;
-    const first = cells[0];
-    const last = cells.pop();
-    if (first === undefined || last === undefined) return null;
-    if (cells.length === 0) return first;
-    let i = 0;
-    for (;;) {
-      let child = 2 * i + 1;
-      if (child >= cells.length) break;
-      if (child + 1 < cells.length && cells[child + 1].bound > cells[child].bound) child++;
-      if (cells[child].bound <= last.bound) break;
-      cells[i] = cells[child];
-      i = child;
-    }
-    cells[i] = last;
-    return first;
-  }
 }

@@ -1,31 +1,27 @@
-import type { Closest, Line } from './closest.ts';
+import { endPiece } from '../geometry/pieces.ts';
+import { type Closest, type Line, lineBetween, middleOf, type Place, turned } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
-import { nearMisses, paintedEndOf } from './misses.ts';
+import { nearMisses, sidesOf } from './misses.ts';
 import { portsNear } from './near-ports.ts';
-import { gapBetween, gapOfEndToHole, gapToEnd, gapToHole, lineOf } from './painted.ts';
-import { partsOnDrawing } from './parts.ts';
+import { gapBetween, gapOf, gapTo, gapToHole, lineOf, paintedEnd, paintedHole } from './painted.ts';
+import { channelMember, type PartMember, partsOnDrawing, portMember } from './parts.ts';
 import { type Tip, tipsOf } from './tips.ts';
 
-/** Where one connected part comes near another without meeting it. */
-export interface Gap {
+/** Where one connected part comes near another without meeting it: the end that stands there, else the middle. */
+export interface Gap extends Place {
   /** Names of the channel or well on either side, the side of the part asked about first. */
   readonly from: string;
   readonly to: string;
   readonly gapMm: number;
-  /** The end that stands at the gap; the middle of the gap where none does. */
-  readonly xMm: number;
-  readonly yMm: number;
-  readonly mark: readonly [number, number, number, number];
+  readonly mark: Line;
   /** The channel whose end stands at the gap, and what it stops short of; null where no end does. */
   readonly stopsShort: { readonly channel: string; readonly of: string } | null;
 }
 
-/** A gap between two parts, seen from the first. */
+/** A gap between members of two parts, seen from the first. */
 interface PartGap extends Closest {
-  readonly part: number;
-  readonly other: number;
-  readonly from: string;
-  readonly to: string;
+  readonly from: PartMember;
+  readonly to: PartMember;
   /** The tip that stands there, if one does: an end of `from`. */
   readonly tip: Tip | null;
 }
@@ -37,48 +33,43 @@ interface PartGap extends Closest {
  */
 export function nearestGap(context: FindingContext, part: number): Gap | null {
   const { pointed, beside } = tipGaps(context);
-  const atTip = smallestOf(missGaps(context), part) ?? smallestOf(pointed, part) ?? smallestOf(beside, part);
-  const gap = atTip ?? leastDistance(context, part);
+  const gap =
+    smallestOf(missGaps(context), part) ??
+    smallestOf(pointed, part) ??
+    smallestOf(beside, part) ??
+    leastDistance(context, part);
   return gap === null ? null : toGap(gap, part);
 }
 
 function smallestOf(gaps: readonly PartGap[], part: number): PartGap | null {
-  let best: PartGap | null = null;
-  for (const gap of gaps) {
-    if (gap.part !== part && gap.other !== part) continue;
-    if (best === null || gap.distanceMm < best.distanceMm - SAME_MM) best = gap;
-  }
-  return best;
+  const smallest = new Smallest();
+  for (const gap of gaps) if (gap.from.part === part || gap.to.part === part) smallest.offer(gap);
+  return smallest.gap;
 }
 
 function toGap(gap: PartGap, part: number): Gap {
-  const { x1, y1, x2, y2, tip } = gap;
-  const isFirst = gap.part === part;
+  const { tip } = gap;
+  const mark = lineBetween(gap);
+  const [own, other] = gap.from.part === part ? [gap.from, gap.to] : [gap.to, gap.from];
   return {
-    from: isFirst ? gap.from : gap.to,
-    to: isFirst ? gap.to : gap.from,
+    from: own.name,
+    to: other.name,
     gapMm: Math.max(0, gap.distanceMm),
-    xMm: tip?.x ?? (x1 + x2) / 2,
-    yMm: tip?.y ?? (y1 + y2) / 2,
-    mark: [x1, y1, x2, y2],
-    stopsShort: tip === null ? null : { channel: gap.from, of: gap.to },
+    ...(tip === null ? middleOf(mark) : { xMm: tip.x, yMm: tip.y }),
+    mark,
+    stopsShort: tip === null ? null : { channel: gap.from.name, of: gap.to.name },
   };
 }
 
 /** Near misses between two parts. */
-const missGaps = oncePerContext((context): PartGap[] => {
-  const { chip } = context;
-  const { ofCentreline, ofPort } = partsOnDrawing(context);
-  return nearMisses(context).flatMap((miss) => {
-    const part = ofCentreline[miss.centreline];
-    const other = miss.port >= 0 ? ofPort[miss.port] : ofCentreline[miss.missed];
-    if (part === other || part < 0 || other < 0) return [];
+const missGaps = oncePerContext((context): PartGap[] =>
+  nearMisses(context).flatMap((miss) => {
+    const [from, to] = sidesOf(context, miss);
+    if (from.part === to.part || from.part < 0 || to.part < 0) return [];
     const [x1, y1, x2, y2] = miss.mark;
-    const to = miss.port >= 0 ? chip.ports[miss.port].name : channelName(context, miss.missed);
-    const from = channelName(context, miss.centreline);
-    return [{ part, other, from, to, tip: miss.tip, distanceMm: miss.gapMm, x1, y1, x2, y2 }];
-  });
-});
+    return [{ from, to, tip: miss.tip, distanceMm: miss.gapMm, x1, y1, x2, y2 }];
+  }),
+);
 
 /** A dead end further than this from every other part tells of no gap. */
 const MOST_TIP_GAP_MM = 3;
@@ -87,52 +78,38 @@ const COS_45 = Math.SQRT1_2;
 
 /** For each dead end the nearest thing of another part in its plane, and the nearest well; what it points at goes before. */
 const tipGaps = oncePerContext((context) => {
-  const pointed: PartGap[] = [];
-  const beside: PartGap[] = [];
-  for (const tip of tipsOf(context)) {
-    if (tip.kind !== 'end') continue;
-    const { ahead, any } = tipGap(context, tip);
-    if (ahead !== null) pointed.push(ahead);
-    if (any !== null) beside.push(any);
-  }
-  return { pointed, beside };
+  const gaps = tipsOf(context)
+    .filter(({ kind }) => kind === 'end')
+    .map((tip) => tipGap(context, tip));
+  return {
+    pointed: gaps.flatMap(({ ahead }) => ahead.gap ?? []),
+    beside: gaps.flatMap(({ any }) => any.gap ?? []),
+  };
 });
 
 function tipGap(context: FindingContext, tip: Tip) {
   const { ends, x, y, outX, outY } = tip;
   const { chip, network } = context;
   const { pieces, index } = network.trace.near;
-  const { ofCentreline, ofPort } = partsOnDrawing(context);
-  const c = ends[0] >> 1;
-  const part = ofCentreline[c];
-  const ahead = new Nearest();
-  const any = new Nearest();
-  if (part < 0 || index === null) return { ahead: null, any: null };
-  const face = paintedEndOf(network, ends[0]);
-  const from = channelName(context, c);
-  const plane = pieces.plane[pieces.firstPiece[c]];
-  const isOther = (i: number): boolean => isOfAnother(context, i, part, plane);
-  const r = MOST_TIP_GAP_MM + pieces.half[pieces.firstPiece[c]];
+  const ahead = new Smallest();
+  const any = new Smallest();
+  const from = channelMember(context, ends[0] >> 1);
+  if (from.part < 0) return { ahead, any };
+  const face = paintedEnd(network, ends[0]);
+  const piece = endPiece(pieces, ends[0]);
+  const r = MOST_TIP_GAP_MM + pieces.half[piece];
+  const isOther = otherTest(context, from.part, pieces.plane[piece]);
   for (const i of index.search(x - r, y - r, x + r, y + r, isOther)) {
-    const other = pieces.centreline[i];
-    offer({
-      ...turned(gapToEnd(chip, pieces, i, face)),
-      part,
-      other: ofCentreline[other],
-      from,
-      to: channelName(context, other),
-      tip,
-    });
+    offer(turned(gapTo(chip, pieces, i, face)), channelMember(context, pieces.centreline[i]));
   }
   for (const p of portsNear(context, x, y, r)) {
-    if (ofPort[p] === part) continue;
-    const port = chip.ports[p];
-    offer({ ...gapOfEndToHole(face, port), part, other: ofPort[p], from, to: port.name, tip });
+    offer(gapOf(face, paintedHole(chip.ports[p])), portMember(context, p));
   }
-  return { ahead: ahead.best, any: any.best };
+  return { ahead, any };
 
-  function offer(gap: PartGap): void {
-    if (gap.distanceMm > MOST_TIP_GAP_MM) return;
+  function offer(closest: Closest, to: PartMember): void {
+    if (to.part === from.part || closest.distanceMm > MOST_TIP_GAP_MM) return;
+    const gap = { ...closest, from, to, tip };
     any.offer(gap);
     const dx = gap.x2 - x;
     const dy = gap.y2 - y;
@@ -140,15 +117,14 @@ function tipGap(context: FindingContext, tip: Tip) {
   }
 }
 
-function isOfAnother(context: FindingContext, i: number, part: number, plane: number): boolean {
+/** Tells pieces of other parts, in a plane or (null) in any. */
+function otherTest(context: FindingContext, part: number, plane: number | null): (piece: number) => boolean {
   const { pieces } = context.network.trace.near;
-  const other = partsOnDrawing(context).ofCentreline[pieces.centreline[i]];
-  return other >= 0 && other !== part && pieces.plane[i] === plane;
-}
-
-/** gapToEnd and gapToHole measure from the piece; a gap is told from the part's side. */
-function turned({ distanceMm, x1, y1, x2, y2 }: Closest): Closest {
-  return { distanceMm, x1: x2, y1: y2, x2: x1, y2: y1 };
+  const { ofCentreline } = partsOnDrawing(context);
+  return (i) => {
+    const other = ofCentreline[pieces.centreline[i]];
+    return other >= 0 && other !== part && (plane === null || pieces.plane[i] === plane);
+  };
 }
 
 /**
@@ -158,83 +134,65 @@ function turned({ distanceMm, x1, y1, x2, y2 }: Closest): Closest {
 function leastDistance(context: FindingContext, part: number): PartGap | null {
   const { chip, network, flow } = context;
   const { pieces, index } = network.trace.near;
-  const { ofCentreline, ofPort, firstPiece, pieceOf } = partsOnDrawing(context);
-  const nearest = new Nearest();
+  const { ofPort, firstPiece, pieceOf } = partsOnDrawing(context);
+  const smallest = new Smallest();
   const emptyPlanes = new Set<number>();
   for (let k = firstPiece[part]; k < firstPiece[part + 1]; k++) {
     const i = pieceOf[k];
     const line = lineOf(pieces, i);
     const margin = Math.SQRT2 * pieces.half[i];
     const plane = pieces.plane[i];
-    const from = channelName(context, pieces.centreline[i]);
-    const isOther = (j: number): boolean => isOfAnother(context, j, part, plane);
+    const from = channelMember(context, pieces.centreline[i]);
     if (!emptyPlanes.has(plane)) {
-      const any = visit(line, margin, isOther, (j) => {
-        const other = pieces.centreline[j];
-        const names = { from, to: channelName(context, other), tip: null };
-        nearest.offer({ ...gapBetween(chip, pieces, i, j), part, other: ofCentreline[other], ...names });
-      });
+      const any = visit(line, margin, plane, (j) => offer(from, j, gapBetween(chip, pieces, i, j)));
       if (!any) emptyPlanes.add(plane);
     }
-    const within = pieces.length[i] / 2 + margin + Math.max(0, nearest.best?.distanceMm ?? Infinity);
+    const within = pieces.length[i] / 2 + margin + Math.max(0, smallest.gap?.distanceMm ?? Infinity);
     for (const p of portsNear(context, (line[0] + line[2]) / 2, (line[1] + line[3]) / 2, within)) {
       if (ofPort[p] === part) continue;
-      const port = chip.ports[p];
-      const names = { from, to: port.name, tip: null };
-      nearest.offer({ ...gapToHole(chip, pieces, i, port), part, other: ofPort[p], ...names });
+      const gap = gapToHole(chip, pieces, i, chip.ports[p]);
+      smallest.offer({ ...gap, from, to: portMember(context, p), tip: null });
     }
   }
   for (const p of flow?.parts[part].ports ?? []) {
     const port = chip.ports[p];
-    const isOther = (j: number): boolean => {
-      const other = ofCentreline[pieces.centreline[j]];
-      return other >= 0 && other !== part;
-    };
-    visit([port.xMm, port.yMm, port.xMm, port.yMm], port.radiusMm, isOther, (j) => {
-      const other = pieces.centreline[j];
-      const names = { from: port.name, to: channelName(context, other), tip: null };
-      const gap = turned(gapToHole(chip, pieces, j, port));
-      nearest.offer({ ...gap, part, other: ofCentreline[other], ...names });
-    });
+    const from = portMember(context, p);
+    visit([port.xMm, port.yMm, port.xMm, port.yMm], port.radiusMm, null, (j) =>
+      offer(from, j, turned(gapToHole(chip, pieces, j, port))),
+    );
   }
-  return nearest.best;
+  return smallest.gap;
+
+  function offer(from: PartMember, piece: number, gap: Closest): void {
+    smallest.offer({ ...gap, from, to: channelMember(context, pieces.centreline[piece]), tip: null });
+  }
 
   /** Measures all pieces that may be nearer to a line than what was found; false when there is none to look at. */
   function visit(
     [ax, ay, bx, by]: Line,
     margin: number,
-    isWanted: (piece: number) => boolean,
+    plane: number | null,
     measure: (piece: number) => void,
   ): boolean {
-    if (index === null) return false;
-    if (nearest.best === null) {
-      const [first] = index.neighbors((ax + bx) / 2, (ay + by) / 2, 1, Number.POSITIVE_INFINITY, isWanted);
+    const isOther = otherTest(context, part, plane);
+    if (smallest.gap === null) {
+      const [first] = index.neighbors((ax + bx) / 2, (ay + by) / 2, 1, Infinity, isOther);
       if (first === undefined) return false;
       measure(first);
     }
-    const r = margin + Math.max(0, nearest.best?.distanceMm ?? 0);
+    const r = margin + Math.max(0, smallest.gap?.distanceMm ?? 0);
     index
-      .search(
-        Math.min(ax, bx) - r,
-        Math.min(ay, by) - r,
-        Math.max(ax, bx) + r,
-        Math.max(ay, by) + r,
-        isWanted,
-      )
+      .search(Math.min(ax, bx) - r, Math.min(ay, by) - r, Math.max(ax, bx) + r, Math.max(ay, by) + r, isOther)
       .forEach(measure);
     return true;
   }
 }
 
-function channelName({ chip, network }: FindingContext, centreline: number): string {
-  return chip.channels[network.trace.near.pieces.centrelineChannel[centreline]].name;
-}
-
-class Nearest {
-  best: PartGap | null = null;
+class Smallest {
+  gap: PartGap | null = null;
 
   offer(gap: PartGap): void {
-    if (this.best === null || gap.distanceMm < this.best.distanceMm - SAME_MM) this.best = gap;
+    if (this.gap === null || gap.distanceMm < this.gap.distanceMm - SAME_MM) this.gap = gap;
   }
 }
 

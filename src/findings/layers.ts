@@ -1,28 +1,22 @@
+import { grouped } from '../by-key.ts';
 import { type LayerCrossing, layerCrossings } from '../network/layer-crossings.ts';
 import { layerKey } from '../runsheet/names.ts';
+import { channelOf } from './centrelines.ts';
 import type { FindingContext } from './context.ts';
-import { found, type Rule, toFinding } from './rule.ts';
+import { type Rule, rule, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
 import { countText, keyText, placeText } from './words.ts';
 
 /** How the layers of the drawing lie to each other. */
-export const layerRules: readonly Rule[] = [
-  { names: ['layers-cross'], run: (context) => found(layersCross(context)) },
-];
+export const layerRules: readonly Rule[] = [rule('layers-cross', layersCross)];
 
 /** One finding per pair of layers of which the run sheet says for neither in which plane it lies. */
 function layersCross({ chip, network, run }: FindingContext): Finding[] {
   if (chip.layers.length < 2) return [];
   const { near } = network.trace;
-  const byPair = new Map<string, LayerCrossing[]>();
-  for (const crossing of layerCrossings(near, chip.ports, chip.joinWithinMm, layerOf)) {
-    if (isPlaced(crossing.a) || isPlaced(crossing.b)) continue;
-    const key = `${crossing.a} ${crossing.b}`;
-    const known = byPair.get(key);
-    if (known === undefined) byPair.set(key, [crossing]);
-    else known.push(crossing);
-  }
-  return [...byPair.values()].map(toLayersCross);
+  const crossings = layerCrossings(near, chip.ports, chip.joinWithinMm, layerOf);
+  const unplaced = crossings.filter(({ a, b }) => !isPlaced(a) && !isPlaced(b));
+  return [...grouped(unplaced, ({ a, b }) => `${a} ${b}`).values()].map(toLayersCross);
 
   function layerOf(channel: number): number {
     return chip.channels[channel].layer;
@@ -39,9 +33,7 @@ function layersCross({ chip, network, run }: FindingContext): Finding[] {
     const [{ a, b, centrelineA, centrelineB, xMm, yMm }] = places;
     const one = chip.layers[a].name;
     const two = chip.layers[b].name;
-    const channels = [centrelineA, centrelineB].map(
-      (c) => chip.channels[near.pieces.centrelineChannel[c]].name,
-    );
+    const channels = [centrelineA, centrelineB].map((c) => channelOf(network, c).name);
     const first = places.length === 1 ? 'at' : 'first at';
     // Strokes in no layer can't be given a plane.
     const upper = two === '' ? one : two;

@@ -1,12 +1,14 @@
+import { grouped } from '../by-key.ts';
 import { minWallMm } from '../chip/limits.ts';
-import { distanceToSegment } from '../geometry/segment.ts';
+import { distanceToPiece } from '../geometry/on-piece.ts';
 import type { Network } from '../network/types.ts';
-import { closestPoints, nearer } from './closest.ts';
+import { type Closest, closestPoints, type Line, lineBetween, nearer } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 import { portsNear } from './near-ports.ts';
-import { gapOfEnds, gapOfEndToHole, gapToEnd, gapToHole, type PaintedEnd, paintedEnd } from './painted.ts';
-import { byPair, pairKey } from './pairs.ts';
-import { isNearAlong, isNearPort, pointOn } from './paths.ts';
+import { gapOf, gapTo, gapToHole, lineOf, type Painted, paintedEnd, paintedHole } from './painted.ts';
+import { pairKey } from './pairs.ts';
+import { channelMember, type PartMember, portMember } from './parts.ts';
+import { isNearAlong, isNearPort, type OnCentreline, pointOn } from './paths.ts';
 import { isAbove, isBelow } from './rule.ts';
 import type { ThinWall } from './thin.ts';
 import { endPlace, type Tip, tipOfEnd, tipsOf } from './tips.ts';
@@ -14,9 +16,6 @@ import { endPlace, type Tip, tipOfEnd, tipsOf } from './tips.ts';
 /** A tip that just misses a strip or a well. */
 export interface NearMiss {
   readonly tip: Tip;
-  /** The tip's first end: 2·centreline, + 1 at the last point. */
-  readonly end: number;
-  readonly centreline: number;
   /** Centreline that it misses, −1 when it is a well. */
   readonly missed: number;
   /** Port that it misses, −1 when it is a channel. */
@@ -29,11 +28,11 @@ export interface NearMiss {
   /** From the centreline's end point to the painted stroke or rim, mm. */
   readonly reachMm: number;
   readonly pointsAtIt: boolean;
-  readonly mark: readonly [number, number, number, number];
+  readonly mark: Line;
 }
 
 /** All near misses, at most one for each tip; two tips that miss each other are one. */
-export const nearMisses: (context: FindingContext) => readonly NearMiss[] = oncePerContext((context) => {
+export const nearMisses = oncePerContext((context): readonly NearMiss[] => {
   const misses: NearMiss[] = [];
   const byTip = new Map<number, NearMiss>();
   const tipAt = tipOfEnd(context);
@@ -52,25 +51,17 @@ export const nearMisses: (context: FindingContext) => readonly NearMiss[] = once
   return misses;
 });
 
-export function paintedEndOf(network: Network, end: number): PaintedEnd {
-  const { chip, trace } = network;
-  const { pieces } = trace.near;
-  const place = endPlace(network, end);
-  return paintedEnd(
-    place.x,
-    place.y,
-    place.outX,
-    place.outY,
-    pieces.half[place.piece],
-    chip.channels[pieces.channel[place.piece]].linecap,
-  );
+/** What a tip's channel is, and what it misses. */
+export function sidesOf(context: FindingContext, { tip, missed, port }: NearMiss): [PartMember, PartMember] {
+  const other = port >= 0 ? portMember(context, port) : channelMember(context, missed);
+  return [channelMember(context, tip.ends[0] >> 1), other];
 }
 
 /** Whether a thin wall is nothing but the near miss itself: all of it lies at the end that misses. */
 export function replacesWall(context: FindingContext, wall: ThinWall): boolean {
   const { network } = context;
   const { pieces } = network.trace.near;
-  return (missesByPair(context).get(pairKey(wall.centrelineA, wall.centrelineB)) ?? []).some((miss) => {
+  return (missesByPair(context).get(pairKey(wall.centrelineA, wall.centrelineB)) ?? []).some(({ miss }) => {
     if (wall.gapMm <= 0 && !miss.pointsAtIt) return false;
     return miss.tip.ends.some(
       (end) =>
@@ -91,150 +82,166 @@ export function replacesWall(context: FindingContext, wall: ThinWall): boolean {
   });
 }
 
-const missesByPair = oncePerContext((context) =>
-  byPair(
-    nearMisses(context)
-      .filter(({ port }) => port < 0)
-      .flatMap((miss) => miss.tip.ends.map((end) => ({ ...miss, centreline: end >> 1 }))),
-    ({ centreline }) => centreline,
-    ({ missed }) => missed,
-  ),
-);
+const missesByPair = oncePerContext((context) => {
+  const pairs = nearMisses(context)
+    .filter(({ port }) => port < 0)
+    .flatMap((miss) => miss.tip.ends.map((end) => ({ miss, key: pairKey(end >> 1, miss.missed) })));
+  return grouped(pairs, ({ key }) => key);
+});
 
 /** A miss is judged against at most this much of the channel's width. */
 const MOST_WIDTH_MM = 0.5;
 
 const COS_45 = Math.SQRT1_2;
 
-function findMiss(context: FindingContext, tip: Tip): NearMiss | null {
-  const { chip, network } = context;
-  const { near } = network.trace;
-  const { pieces, index } = near;
-  const [end] = tip.ends;
-  const c = end >> 1;
-  const places = tip.ends.map((member) => endPlace(network, member));
-  const [place] = places;
-  const own = new Set(places.map(({ piece }) => piece));
-  const channel = chip.channels[pieces.channel[place.piece]];
-  const half = pieces.half[place.piece];
-  const wallMm = minWallMm(chip, channel.depthMm)?.value ?? 0;
+/** A tip with what it takes to judge what it misses. */
+interface Aim {
+  readonly tip: Tip;
+  /** Its first end, and the places of all. */
+  readonly at: OnCentreline;
+  readonly places: readonly ReturnType<typeof endPlace>[];
+  /** Half the width of its widest channel, mm. */
+  readonly half: number;
+  readonly wallMm: number;
+  readonly limitMm: number;
+  readonly painted: readonly Painted[];
+}
+
+function toAim({ chip, network }: FindingContext, tip: Tip): Aim {
+  const { pieces } = network.trace.near;
+  const places = tip.ends.map((end) => endPlace(network, end));
+  const [{ piece, s }] = places;
+  const at = { c: pieces.centreline[piece], s };
+  const half = pieces.half[piece];
+  const wallMm = minWallMm(chip, chip.channels[pieces.channel[piece]].depthMm)?.value ?? 0;
   const limitMm = Math.max(wallMm, Math.min(2 * half, MOST_WIDTH_MM));
   // Of strokes that come from one side the widest paints the tip; those of a fan each paint their part.
-  const painted = (tip.kind === 'end' ? [end] : tip.ends).map((member) => paintedEndOf(network, member));
-  let best: NearMiss | null = null;
+  const ends = tip.kind === 'end' ? tip.ends.slice(0, 1) : tip.ends;
+  const painted = ends.map((end) => paintedEnd(network, end));
+  return { tip, at, places, half, wallMm, limitMm, painted };
+}
 
-  const around = limitMm + half * Math.SQRT2 + half;
-  const found = index?.search(
-    tip.x - around,
-    tip.y - around,
-    tip.x + around,
-    tip.y + around,
-    (i) => pieces.plane[i] === channel.plane && !own.has(i) && !leftOutPieces(context).has(i),
-  );
-  for (const i of found ?? []) {
-    const gap = painted.map((face) => gapToEnd(chip, pieces, i, face)).reduce(nearer);
-    if (!isBelow(gap.distanceMm, limitMm)) continue;
-    // Seen from the middle of the end, the nearest painted point says where it points and how far it must go.
-    const aim = gapToHole(chip, pieces, i, { xMm: tip.x, yMm: tip.y, radiusMm: 0 });
-    const onLine = closestPoints(
-      [tip.x, tip.y, tip.x, tip.y],
-      [pieces.x1[i], pieces.y1[i], pieces.x2[i], pieces.y2[i]],
-    );
-    const t = pieces.start[i] + Math.hypot(onLine.x2 - pieces.x1[i], onLine.y2 - pieces.y1[i]);
-    const target = aim.distanceMm > 1e-9 ? { x: aim.x1, y: aim.y1 } : { x: onLine.x2, y: onLine.y2 };
-    const pointsAtIt = pointsAt(target.x, target.y);
-    const apartMm = 4 * (half + pieces.half[i] + wallMm);
-    const isNear = (): boolean => isNearAlong(context, c, place.s, pieces.centreline[i], t, apartMm);
-    if (!mayMiss(pointsAtIt, isNear)) continue;
-    // Where there is no gap and a join is near, fluid passes: whether the right way is the etched area's affair.
-    if (!isAbove(gap.distanceMm, 0) && isNear()) continue;
-    if (tip.kind === 'fan' && !recedesFrom((x, y) => distanceToPiece(x, y, i))) continue;
-    consider({
-      tip,
-      end,
-      centreline: c,
-      missed: pieces.centreline[i],
-      port: -1,
-      missedEnd: missedEndOf(i, gap.distanceMm),
-      gapMm: Math.max(0, gap.distanceMm),
-      limitMm,
-      reachMm: Math.max(0, aim.distanceMm),
-      pointsAtIt,
-      mark: [gap.x1, gap.y1, gap.x2, gap.y2],
-    });
-  }
-  for (const p of portsNear(context, tip.x, tip.y, limitMm + half * Math.SQRT2)) {
-    const port = chip.ports[p];
-    const gap = painted.map((face) => gapOfEndToHole(face, port)).reduce(nearer);
-    if (!isBelow(gap.distanceMm, limitMm)) continue;
-    const pointsAtIt = pointsAt(port.xMm, port.yMm);
-    if (!mayMiss(pointsAtIt, () => isNearPort(context, c, place.s, p, 4 * (2 * half + wallMm)))) continue;
-    if (tip.kind === 'fan' && !recedesFrom((x, y) => Math.hypot(x - port.xMm, y - port.yMm))) continue;
-    consider({
-      tip,
-      end,
-      centreline: c,
-      missed: -1,
-      port: p,
-      missedEnd: -1,
-      gapMm: Math.max(0, gap.distanceMm),
-      limitMm,
-      reachMm: Math.max(0, Math.hypot(port.xMm - tip.x, port.yMm - tip.y) - port.radiusMm),
-      pointsAtIt,
-      mark: [gap.x1, gap.y1, gap.x2, gap.y2],
-    });
+/** The thing that a tip most likely was to meet: what it points at goes before, then what is nearest. */
+function findMiss(context: FindingContext, tip: Tip): NearMiss | null {
+  const aim = toAim(context, tip);
+  let best: NearMiss | null = null;
+  for (const miss of [...missedPieces(context, aim), ...missedPorts(context, aim)]) {
+    const isBetter =
+      best === null || (miss.pointsAtIt === best.pointsAtIt ? miss.gapMm < best.gapMm : miss.pointsAtIt);
+    if (isBetter) best = miss;
   }
   return best;
+}
 
-  function consider(miss: NearMiss): void {
-    if (
-      best === null ||
-      (miss.pointsAtIt && !best.pointsAtIt) ||
-      (miss.pointsAtIt === best.pointsAtIt && miss.gapMm < best.gapMm)
-    ) {
-      best = miss;
-    }
-  }
+function missedPieces(context: FindingContext, aim: Aim): NearMiss[] {
+  const { pieces, index } = context.network.trace.near;
+  const { tip, places, half, limitMm } = aim;
+  const own = new Set(places.map(({ piece }) => piece));
+  const plane = pieces.plane[places[0].piece];
+  const leftOut = leftOutPieces(context);
+  const r = limitMm + half * Math.SQRT2 + half;
+  return index
+    .search(
+      tip.x - r,
+      tip.y - r,
+      tip.x + r,
+      tip.y + r,
+      (i) => pieces.plane[i] === plane && !own.has(i) && !leftOut.has(i),
+    )
+    .flatMap((i) => missOfPiece(context, aim, i) ?? []);
+}
 
-  /**
-   * What an end leads to by a short way (its own last bend, its own junction) it does not miss, unless it points back at
-   * it. A fan may be a mere corner: it misses only what it points at, and never what it leads to by a short way.
-   */
-  function mayMiss(pointsAtIt: boolean, isNear: () => boolean): boolean {
-    return tip.kind === 'end' ? pointsAtIt || !isNear() : pointsAtIt && !isNear();
-  }
+function missOfPiece(context: FindingContext, aim: Aim, i: number): NearMiss | null {
+  const { chip, network } = context;
+  const { pieces } = network.trace.near;
+  const { tip, half, wallMm, painted } = aim;
+  const gap = painted.map((end) => gapTo(chip, pieces, i, end)).reduce(nearer);
+  if (!isBelow(gap.distanceMm, aim.limitMm)) return null;
+  // Seen from the middle of the end, the nearest painted point says where it points and how far it must go.
+  const toward = gapToHole(chip, pieces, i, { xMm: tip.x, yMm: tip.y, radiusMm: 0 });
+  const onLine = closestPoints([tip.x, tip.y, tip.x, tip.y], lineOf(pieces, i));
+  const t = pieces.start[i] + Math.hypot(onLine.x2 - pieces.x1[i], onLine.y2 - pieces.y1[i]);
+  const pointsAtIt =
+    toward.distanceMm > 1e-9 ? pointsAt(tip, toward.x1, toward.y1) : pointsAt(tip, onLine.x2, onLine.y2);
+  const apartMm = 4 * (half + pieces.half[i] + wallMm);
+  const missed = pieces.centreline[i];
+  const isNear = (): boolean => isNearAlong(context, aim.at, { c: missed, s: t }, apartMm);
+  if (!mayMiss(tip, pointsAtIt, isNear)) return null;
+  // Where there is no gap and a join is near, fluid passes: whether the right way is the etched area's affair.
+  if (!isAbove(gap.distanceMm, 0) && isNear()) return null;
+  if (tip.kind === 'fan' && !recedes(network, aim, (x, y) => distanceToPiece(pieces, i, x, y))) return null;
+  const missedEnd = missedEndOf(context, aim, i, gap.distanceMm);
+  return toMiss(aim, gap, toward.distanceMm, { pointsAtIt, missed, missedEnd, port: -1 });
+}
 
-  function pointsAt(x: number, y: number): boolean {
-    const dx = x - tip.x;
-    const dy = y - tip.y;
-    const distance = Math.hypot(dx, dy);
-    return distance === 0 || !isAbove(COS_45 * distance, dx * tip.outX + dy * tip.outY + 1e-12);
-  }
+function missedPorts(context: FindingContext, aim: Aim): NearMiss[] {
+  const { tip, half, wallMm, limitMm, painted } = aim;
+  return portsNear(context, tip.x, tip.y, limitMm + half * Math.SQRT2).flatMap((port) => {
+    const well = context.chip.ports[port];
+    const { xMm, yMm, radiusMm } = well;
+    const gap = painted.map((end) => gapOf(end, paintedHole(well))).reduce(nearer);
+    if (!isBelow(gap.distanceMm, limitMm)) return [];
+    const pointsAtIt = pointsAt(tip, xMm, yMm);
+    const isNear = (): boolean => isNearPort(context, aim.at, port, 4 * (2 * half + wallMm));
+    if (!mayMiss(tip, pointsAtIt, isNear)) return [];
+    const distanceTo = (x: number, y: number): number => Math.hypot(x - xMm, y - yMm);
+    if (tip.kind === 'fan' && !recedes(context.network, aim, distanceTo)) return [];
+    const reachMm = Math.hypot(xMm - tip.x, yMm - tip.y) - radiusMm;
+    return [toMiss(aim, gap, reachMm, { pointsAtIt, missed: -1, missedEnd: -1, port })];
+  });
+}
 
-  /** Whether every channel of a fan leads away from a thing: a corner beside a channel that turns with it does not. */
-  function recedesFrom(distanceTo: (x: number, y: number) => number): boolean {
-    const here = distanceTo(tip.x, tip.y);
-    return places.every(({ piece, s }) => {
-      const away = Math.min(4 * half, pieces.centrelineLength[pieces.centreline[piece]]);
-      const [x, y] = pointOn(network, pieces.centreline[piece], s === 0 ? away : s - away);
-      return distanceTo(x, y) >= here + LEAST_RECESSION * away;
-    });
-  }
+function toMiss(
+  { tip, limitMm }: Aim,
+  gap: Closest,
+  reachMm: number,
+  what: Pick<NearMiss, 'pointsAtIt' | 'missed' | 'missedEnd' | 'port'>,
+): NearMiss {
+  const gapMm = Math.max(0, gap.distanceMm);
+  return { tip, ...what, gapMm, limitMm, reachMm: Math.max(0, reachMm), mark: lineBetween(gap) };
+}
 
-  function distanceToPiece(x: number, y: number, i: number): number {
-    return distanceToSegment(x, y, pieces.x1[i], pieces.y1[i], pieces.x2[i], pieces.y2[i]);
-  }
+/**
+ * What an end leads to by a short way (its own last bend, its own junction) it does not miss, unless it points back at
+ * it. A fan may be a mere corner: it misses only what it points at, and never what it leads to by a short way.
+ */
+function mayMiss({ kind }: Tip, pointsAtIt: boolean, isNear: () => boolean): boolean {
+  return kind === 'end' ? pointsAtIt || !isNear() : pointsAtIt && !isNear();
+}
 
-  /** The end of the missed centreline that stands at a tip, when it is its painted end that is nearest. */
-  function missedEndOf(i: number, gapMm: number): number {
-    const other = pieces.centreline[i];
-    for (const e of [2 * other, 2 * other + 1]) {
-      if (tipOfEnd(context)[e] < 0 || endPlace(network, e).piece !== i) continue;
-      const face = paintedEndOf(network, e);
-      if (painted.some((own) => gapOfEnds(own, face).distanceMm <= gapMm + 1e-9)) return e;
-    }
-    return -1;
-  }
+function pointsAt(tip: Tip, x: number, y: number): boolean {
+  const dx = x - tip.x;
+  const dy = y - tip.y;
+  const distance = Math.hypot(dx, dy);
+  return distance === 0 || !isAbove(COS_45 * distance, dx * tip.outX + dy * tip.outY + 1e-12);
+}
+
+/** Whether every channel of a fan leads away from a thing: a corner beside a channel that turns with it does not. */
+function recedes(
+  network: Network,
+  { tip, places, half }: Aim,
+  distanceTo: (x: number, y: number) => number,
+): boolean {
+  const { pieces } = network.trace.near;
+  const here = distanceTo(tip.x, tip.y);
+  return places.every(({ piece, s }) => {
+    const c = pieces.centreline[piece];
+    const away = Math.min(4 * half, pieces.centrelineLength[c]);
+    const [x, y] = pointOn(network, c, s === 0 ? away : s - away);
+    return distanceTo(x, y) >= here + LEAST_RECESSION * away;
+  });
+}
+
+/** The end of the missed centreline that stands at a tip, when it is its painted end that is nearest. */
+function missedEndOf(context: FindingContext, { painted }: Aim, i: number, gapMm: number): number {
+  const { network } = context;
+  const other = network.trace.near.pieces.centreline[i];
+  const missed = [2 * other, 2 * other + 1].find((end) => {
+    if (tipOfEnd(context)[end] < 0 || endPlace(network, end).piece !== i) return false;
+    const face = paintedEnd(network, end);
+    return painted.some((own) => gapOf(own, face).distanceMm <= gapMm + 1e-9);
+  });
+  return missed ?? -1;
 }
 
 /** End pieces that rule 4 left out at tips: a stroke that is kept covers the same ground. */

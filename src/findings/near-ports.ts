@@ -1,4 +1,6 @@
+import type { Port } from '../chip/types.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
+import { isBelow } from './rule.ts';
 
 /** Ports whose rim comes within a distance of a point: a sweep over the ports sorted by x. */
 export function portsNear(context: FindingContext, x: number, y: number, withinMm: number): number[] {
@@ -18,6 +20,23 @@ export function portsNear(context: FindingContext, x: number, y: number, withinM
     if (Math.hypot(port.xMm - x, port.yMm - y) - port.radiusMm <= withinMm) found.push(order[k]);
   }
   return found;
+}
+
+/** Pairs of ports whose rims are nearer than a limit, and how near. */
+export function closePorts(context: FindingContext, limitMm: number): [number, number, number][] {
+  const { ports } = context.chip;
+  return ports.flatMap(({ xMm, yMm, radiusMm }, p) =>
+    portsNear(context, xMm, yMm, radiusMm + limitMm)
+      .filter((q) => q > p)
+      .sort((q, r) => q - r)
+      .map((q): [number, number, number] => [p, q, gapOfPorts(ports[p], ports[q])])
+      .filter(([, , gapMm]) => isBelow(gapMm, limitMm)),
+  );
+}
+
+function gapOfPorts(p: Port, q: Port): number {
+  const [one, two] = p.xMm <= q.xMm ? [p, q] : [q, p];
+  return Math.hypot(two.xMm - one.xMm, two.yMm - one.yMm) - one.radiusMm - two.radiusMm;
 }
 
 const portsByX = oncePerContext(({ chip }) => ({

@@ -1,14 +1,12 @@
 import { DEFAULT_JOINTS } from '../chip/defaults.ts';
-import type { Run } from '../chip/types.ts';
 import type { RunSheet } from '../runsheet/types.ts';
-import { found, type Rule, toFinding } from './rule.ts';
+import type { FindingContext } from './context.ts';
+import { type Rule, rule, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
 import { listText } from './words.ts';
 
 /** What the run sheet asks for and this program does not compute yet: each is held, so that nobody takes silence for an answer. */
-export const notComputedRules: readonly Rule[] = [
-  { names: ['not-computed'], run: ({ run }) => found(notComputed(run)) },
-];
+export const notComputedRules: readonly Rule[] = [rule('not-computed', notComputed)];
 
 /** One part of the run sheet that waits for its computation. */
 interface Waiting {
@@ -22,9 +20,9 @@ interface Waiting {
   readonly key: string;
 }
 
-function notComputed({ sheet }: Pick<Run, 'sheet'>): Finding[] {
-  if (sheet === null) return [];
-  return waitingParts(sheet).map(({ names, what, instead, key }) =>
+function notComputed({ run }: FindingContext): Finding[] {
+  if (run.sheet === null) return [];
+  return waitingParts(run.sheet).map(({ names, what, instead, key }) =>
     toFinding('not-computed', 'blocker', {
       message: `${what} is not computed yet: ${instead}`,
       fix: `take ${key} out of the run sheet to go on without it, and answer it by other means`,

@@ -1,23 +1,17 @@
+import { grouped } from '../by-key.ts';
 import type { Obstacle } from '../chip/types.ts';
+import type { Place } from './closest.ts';
 import type { FindingContext } from './context.ts';
-import { found, type Rule, toFinding } from './rule.ts';
+import { type Rule, rule, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
 import { countText, listText } from './words.ts';
 
 /** Drawn areas in a channel that are no ports: the model knows nothing of them. */
-export const obstacleRules: readonly Rule[] = [
-  { names: ['obstacle'], run: (context) => found(obstacles(context)) },
-];
+export const obstacleRules: readonly Rule[] = [rule('obstacle', obstacles)];
 
 /** One finding per channel for what stands in it, and one for what lies across its walls. */
 function obstacles({ chip }: FindingContext): Finding[] {
-  const groups = new Map<string, Obstacle[]>();
-  for (const obstacle of chip.obstacles) {
-    const key = `${obstacle.channel} ${obstacle.inside}`;
-    const group = groups.get(key);
-    if (group === undefined) groups.set(key, [obstacle]);
-    else group.push(obstacle);
-  }
+  const groups = grouped(chip.obstacles, ({ channel, inside }) => `${channel} ${inside}`);
   return [...groups.values()].map((group) => {
     const [first] = group;
     const { name } = chip.channels[first.channel];
@@ -45,7 +39,7 @@ function whoText(group: readonly Obstacle[]): string {
   return isNamed ? `${what} (${listText(group.map(({ name }) => name))})` : what;
 }
 
-function middleOf({ circle, rings }: Obstacle): { readonly xMm: number; readonly yMm: number } {
+function middleOf({ circle, rings }: Obstacle): Place {
   if (circle !== null) return circle;
   const [ring] = rings;
   let [x, y] = [0, 0];

@@ -1,5 +1,6 @@
-import type { FindingContext } from './context.ts';
-import { oncePerContext } from './context.ts';
+import { type Groups, sidesByNode } from '../groups.ts';
+import type { Network } from '../network/types.ts';
+import { type FindingContext, oncePerContext } from './context.ts';
 
 /** A narrower channel that opens into a wider reach at one of the reach's ends. */
 export interface Opening {
@@ -8,28 +9,10 @@ export interface Opening {
   readonly side: 'axis' | 'edge';
 }
 
-/** Reaches at each node as 2·reach + (1 at the reach's `to` end): of[first[n]] … of[first[n + 1] − 1]. */
-export interface NodeReaches {
-  readonly first: Int32Array;
-  readonly of: Int32Array;
-}
-
-export const reachesAtNodes: (context: FindingContext) => NodeReaches = oncePerContext(({ network }) => {
-  const { nodeCount, reachCount, reachFrom, reachTo } = network;
-  const first = new Int32Array(nodeCount + 1);
-  for (let r = 0; r < reachCount; r++) {
-    first[reachFrom[r] + 1]++;
-    first[reachTo[r] + 1]++;
-  }
-  for (let n = 0; n < nodeCount; n++) first[n + 1] += first[n];
-  const fill = first.slice(0, nodeCount);
-  const of = new Int32Array(2 * reachCount);
-  for (let r = 0; r < reachCount; r++) {
-    of[fill[reachFrom[r]]++] = 2 * r;
-    of[fill[reachTo[r]]++] = 2 * r + 1;
-  }
-  return { first, of };
-});
+/** Reaches at each node, as 2·reach + (1 at the reach's `to` end). */
+export const reachesAtNodes = oncePerContext(
+  ({ network }): Groups => sidesByNode(network.nodeCount, network.reachFrom, network.reachTo),
+);
 
 /**
  * The narrower channels that open into a reach at its `end`, with flow that comes from them ('in') or goes into them
@@ -37,7 +20,7 @@ export const reachesAtNodes: (context: FindingContext) => NodeReaches = oncePerC
  */
 export function openingsAt(
   { network, chip, flow }: FindingContext,
-  { first, of }: NodeReaches,
+  { first, item }: Groups,
   wide: number,
   end: 'from' | 'to',
   stream: 'in' | 'out',
@@ -47,8 +30,8 @@ export function openingsAt(
   const widthMm = chip.channels[network.reachChannel[wide]].ductWidthMm;
   const openings: Opening[] = [];
   for (let k = first[node]; k < first[node + 1]; k++) {
-    const feeder = of[k] >> 1;
-    const isAtTo = (of[k] & 1) === 1;
+    const feeder = item[k] >> 1;
+    const isAtTo = (item[k] & 1) === 1;
     const feederMm = chip.channels[network.reachChannel[feeder]].ductWidthMm;
     const towardsNode = isAtTo ? flow.reachFlow[feeder] : -flow.reachFlow[feeder];
     const carries = stream === 'in' ? towardsNode > 0 : towardsNode < 0;
@@ -57,8 +40,6 @@ export function openingsAt(
   }
   return openings;
 }
-
-type Columns = FindingContext['network'];
 
 /** Within this angle of the wide channel's axis a feeder comes along it, else through its side. */
 const ALONG_COSINE = Math.SQRT1_2;
@@ -69,7 +50,7 @@ const ALONG_COSINE = Math.SQRT1_2;
  * comes before it is only the carried-on piece to the wide centreline.
  */
 function sideOf(
-  network: Columns,
+  network: Network,
   wide: number,
   end: 'from' | 'to',
   feeder: number,

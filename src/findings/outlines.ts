@@ -1,13 +1,14 @@
+import { grouped } from '../by-key.ts';
 import type { OutlineFault, OutlineReason } from '../chip/types.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
-import { found, type Rule, toFinding } from './rule.ts';
+import { type Rule, rule, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
 import { countText, listText } from './words.ts';
 
 /** Channels drawn as outlines: filled, or as a hairline round what would be etched; and drawings without any channel. */
 export const outlineRules: readonly Rule[] = [
-  { names: ['filled-outline'], withoutChannels: true, run: (context) => found(filledOutlines(context)) },
-  { names: ['no-channel'], run: (context) => found(noChannel(context)) },
+  { ...rule('filled-outline', filledOutlines), withoutChannels: true },
+  rule('no-channel', noChannel),
 ];
 
 /** Every channel of the drawing is an outline: nothing else can be said of it. */
@@ -16,22 +17,19 @@ export function isAllOutlines({ chip }: FindingContext): boolean {
 }
 
 /** Names of ports that an outline leads to: that no channel does follows from it. */
-export const portsOnOutlines: (context: FindingContext) => ReadonlySet<string> = oncePerContext(
-  (context) => new Set(outlinesOf(context).flatMap(({ ports }) => ports)),
+export const portsOnOutlines = oncePerContext(
+  (context): ReadonlySet<string> => new Set(outlinesOf(context).flatMap(({ ports }) => ports)),
 );
 
 /** Whether a channel ends on an outline at a place: that it meets nothing there follows from it. */
-export const endsOnOutline: (
-  context: FindingContext,
-) => (place: { readonly x: number; readonly y: number }) => boolean = oncePerContext((context) => {
-  const places = new Set(
-    outlinesOf(context).flatMap(({ ends }) => ends.map(({ xMm, yMm }) => `${xMm} ${yMm}`)),
-  );
-  return ({ x, y }) => places.has(`${x} ${y}`);
+export const endsOnOutline = oncePerContext((context) => {
+  const ends = outlinesOf(context).flatMap((outline) => outline.ends);
+  const places = new Set(ends.map(({ xMm, yMm }) => `${xMm} ${yMm}`));
+  return ({ x, y }: { readonly x: number; readonly y: number }): boolean => places.has(`${x} ${y}`);
 });
 
 /** Connected parts of the network that an outline would join to something. */
-export const partsOnOutlines: (context: FindingContext) => ReadonlySet<number> = oncePerContext((context) => {
+export const partsOnOutlines = oncePerContext((context): ReadonlySet<number> => {
   const parts = new Set<number>();
   const { network, flow, chip } = context;
   const outlines = outlinesOf(context);
@@ -58,13 +56,7 @@ function filledOutlines(context: FindingContext): Finding[] {
   const outlines = outlinesOf(context);
   if (outlines.length === 0) return [];
   if (isAllOutlines(context)) return [allOutlines(outlines)];
-  const byReason = new Map<OutlineReason, OutlineFault[]>();
-  for (const fault of outlines) {
-    const group = byReason.get(fault.reason);
-    if (group === undefined) byReason.set(fault.reason, [fault]);
-    else group.push(fault);
-  }
-  return [...byReason].map(([reason, group]) => someOutlines(reason, group));
+  return [...grouped(outlines, ({ reason }) => reason)].map(([reason, group]) => someOutlines(reason, group));
 }
 
 function allOutlines(outlines: readonly OutlineFault[]): Finding {
@@ -79,14 +71,15 @@ function allOutlines(outlines: readonly OutlineFault[]): Finding {
   return toFinding('filled-outline', 'blocker', {
     message: `the drawing shows its channels as outlines (${what.join(' and ')}${named}) and has no centreline: nothing could be computed`,
     fix: `draw the centrelines: each channel as one line along its middle, with its width as the stroke width and no fill; name what is no channel under ignore: in the run sheet, and the outline of the part chip-edge`,
-    ...placeOf(outlines),
+    at: outlines[0],
+    names,
   });
 }
 
 function someOutlines(reason: OutlineReason, outlines: readonly OutlineFault[]): Finding {
   const one = outlines.length === 1;
   const [first] = outlines;
-  const it = one ? 'it' : 'them';
+  const it = itText(outlines);
   const redraw = `draw the centreline of ${!one ? 'each' : namesOf(outlines).length === 0 ? 'it' : first.name}: one line along its middle with its width as the stroke width and no fill`;
   return toFinding('filled-outline', 'blocker', {
     message: `${namesText(outlines)} ${one ? 'is' : 'are'} drawn as ${LOOKS[reason](outlines)}; only strokes along a centreline are channels, so ${one ? 'it was' : 'they were'} left out`,
@@ -96,18 +89,24 @@ function someOutlines(reason: OutlineReason, outlines: readonly OutlineFault[]):
         : reason === 'no-stroke'
           ? `${redraw}, or take data-channel off ${it}`
           : `${redraw}, or name ${it} under ignore: in the run sheet if ${one ? 'it is no channel' : 'they are no channels'}`,
-    ...placeOf(outlines),
+    at: first,
+    names: namesOf(outlines),
   });
 }
 
 const LOOKS: Readonly<Record<OutlineReason, (outlines: readonly OutlineFault[]) => string>> = {
   stroked: (outlines) => `${filledText(outlines)} (stroked too)`,
-  end: (outlines) =>
-    `${filledText(outlines)} (${listText(endNames(outlines))} ${endsText(outlines)} on ${outlines.length === 1 ? 'it' : 'them'})`,
+  end: (outlines) => {
+    const ends = [...new Set(outlines.flatMap((outline) => outline.ends.map(({ channel }) => channel)))];
+    return `${filledText(outlines)} (${listText(ends)} ${ends.length === 1 ? 'ends' : 'end'} on ${itText(outlines)})`;
+  },
   port: (outlines) =>
-    `${filledText(outlines)} (the port ${listText(portNames(outlines))} lies on ${outlines.length === 1 ? 'it' : 'them'})`,
-  hairline: (outlines) =>
-    `${outlines.length === 1 ? 'a closed hairline' : 'closed hairlines'} round ${holdText(outlines)}, with no channel on ${outlines.length === 1 ? 'it' : 'them'}`,
+    `${filledText(outlines)} (the port ${listText(portNames(outlines))} lies on ${itText(outlines)})`,
+  hairline: (outlines) => {
+    const ports = portNames(outlines);
+    const held = ports.length === 0 ? 'other such lines' : listText(ports);
+    return `${outlines.length === 1 ? 'a closed hairline' : 'closed hairlines'} round ${held}, with no channel on ${itText(outlines)}`;
+  },
   'no-channels': filledText,
   'no-stroke': (outlines) => `${filledText(outlines)} without a stroke, though marked data-channel`,
 };
@@ -116,21 +115,12 @@ function filledText({ length }: readonly OutlineFault[]): string {
   return length === 1 ? 'a filled outline' : 'filled outlines';
 }
 
-function endNames(outlines: readonly OutlineFault[]): string[] {
-  return [...new Set(outlines.flatMap(({ ends }) => ends.map(({ channel }) => channel)))];
-}
-
-function endsText(outlines: readonly OutlineFault[]): string {
-  return endNames(outlines).length === 1 ? 'ends' : 'end';
+function itText({ length }: readonly OutlineFault[]): string {
+  return length === 1 ? 'it' : 'them';
 }
 
 function portNames(outlines: readonly OutlineFault[]): string[] {
   return [...new Set(outlines.flatMap(({ ports }) => ports))];
-}
-
-function holdText(outlines: readonly OutlineFault[]): string {
-  const ports = portNames(outlines);
-  return ports.length === 0 ? 'other such lines' : listText(ports);
 }
 
 /** As many names as can be read, and how many have none. */
@@ -145,14 +135,6 @@ function namesText(outlines: readonly OutlineFault[]): string {
 function namesOf(outlines: readonly OutlineFault[]): string[] {
   const named = outlines.filter(({ name }) => !name.startsWith('unnamed ')).map(({ name }) => name);
   return [...new Set(named)];
-}
-
-function placeOf(outlines: readonly OutlineFault[]): {
-  readonly at: { readonly xMm: number; readonly yMm: number };
-  readonly names: readonly string[];
-} {
-  const [{ xMm, yMm }] = outlines;
-  return { at: { xMm, yMm }, names: namesOf(outlines) };
 }
 
 /** A drawing without channels, or anything that might be one, would otherwise have no fault at all. */

@@ -3,94 +3,59 @@ import { FINE_MM, finePieces } from '../geometry/curve.ts';
 import { endsAtVertex, type Pieces, startsAtVertex } from '../geometry/pieces.ts';
 import { ROUND, type Rounding, turnOf } from '../geometry/rounding.ts';
 import { isNextToCurvedEnd, roundingAt } from '../geometry/strip.ts';
+import type { Network } from '../network/types.ts';
 import { type Closest, closestPoints, type Line, nearer } from './closest.ts';
+import { endPlace } from './tips.ts';
 
 /**
  * The painted stroke, caps included: what is etched. Piece by piece it is a rectangle along the piece and a disc at each
  * inner vertex and round cap; butt caps end square, square caps half a width further on.
  */
 
-/** A line with all that lies within a radius of it; an area when it has corners. */
-interface Part {
+/** Lines with all that lies within a radius of them; an area when it has corners. */
+export interface Painted {
   readonly lines: readonly Line[];
   readonly radius: number;
-  /** Corners of a filled convex area whose sides `lines` are; null for a line. */
+  /** Corners of a filled convex area whose sides `lines` are; null for lines. */
   readonly corners: readonly (readonly [number, number])[] | null;
 }
+
+type Round = { readonly xMm: number; readonly yMm: number; readonly radiusMm: number };
 
 /**
  * Material between the painted areas of two pieces (mm), and the two wall points that face each other there. Where the
  * areas overlap it is negative, by how far: the distance of the centrelines less both halves.
  */
 export function gapBetween(chip: Chip, pieces: Pieces, i: number, j: number): Closest {
-  let best: Closest | null = null;
-  for (const one of partsOf(chip, pieces, i)) {
-    for (const two of partsOf(chip, pieces, j)) {
-      const gap = gapOfParts(one, two);
-      best = best === null ? gap : nearer(best, gap);
-    }
-  }
-  if (best !== null && best.distanceMm > 0) return best;
-  const overlap = closestOf(linesOf(pieces, i), linesOf(pieces, j));
+  const gap = leastOf(paintedParts(chip, pieces, i), paintedParts(chip, pieces, j), gapOf);
+  if (gap.distanceMm > 0) return gap;
+  const overlap = leastOf(linesOf(pieces, i), linesOf(pieces, j), closestPoints);
   return { ...overlap, distanceMm: Math.min(0, overlap.distanceMm - pieces.half[i] - pieces.half[j]) };
 }
 
+/** Material between the painted area of a piece and another one, as of an end (mm); negative where they overlap. */
+export function gapTo(chip: Chip, pieces: Pieces, i: number, other: Painted): Closest {
+  return leastOf(paintedParts(chip, pieces, i), [other], gapOf);
+}
+
 /** Material between the painted area of a piece and a round hole (mm); negative where they overlap. */
-export function gapToHole(
-  chip: Chip,
-  pieces: Pieces,
-  i: number,
-  hole: { readonly xMm: number; readonly yMm: number; readonly radiusMm: number },
-): Closest {
-  return gapToPart(chip, pieces, i, {
-    lines: [[hole.xMm, hole.yMm, hole.xMm, hole.yMm]],
-    radius: hole.radiusMm,
-    corners: null,
-  });
+export function gapToHole(chip: Chip, pieces: Pieces, i: number, hole: Round): Closest {
+  return gapTo(chip, pieces, i, paintedHole(hole));
 }
 
-/** Material between the painted area of a piece and the painted end (its face, or its round cap) of a channel (mm). */
-export function gapToEnd(chip: Chip, pieces: Pieces, i: number, end: PaintedEnd): Closest {
-  return gapToPart(chip, pieces, i, { lines: [end.face], radius: end.radius, corners: null });
+export function paintedHole({ xMm, yMm, radiusMm }: Round): Painted {
+  return disc(xMm, yMm, radiusMm);
 }
 
-export function gapOfEnds(one: PaintedEnd, two: PaintedEnd): Closest {
-  return gapOfParts(
-    { lines: [one.face], radius: one.radius, corners: null },
-    { lines: [two.face], radius: two.radius, corners: null },
-  );
-}
-
-export function gapOfEndToHole(
-  end: PaintedEnd,
-  hole: { readonly xMm: number; readonly yMm: number; readonly radiusMm: number },
-): Closest {
-  return gapOfParts(
-    { lines: [end.face], radius: end.radius, corners: null },
-    { lines: [[hole.xMm, hole.yMm, hole.xMm, hole.yMm]], radius: hole.radiusMm, corners: null },
-  );
-}
-
-/** What a channel's end paints: a straight face across it, or (radius above 0) a disc round the end point. */
-export interface PaintedEnd {
-  readonly face: Line;
-  readonly radius: number;
-}
-
-/** The painted end at a point with unit direction out of the channel. */
-export function paintedEnd(
-  x: number,
-  y: number,
-  outX: number,
-  outY: number,
-  half: number,
-  linecap: 'butt' | 'round' | 'square',
-): PaintedEnd {
-  if (linecap === 'round') return { face: [x, y, x, y], radius: half };
-  const beyond = linecap === 'square' ? half : 0;
-  const cx = x + outX * beyond;
-  const cy = y + outY * beyond;
-  return { face: [cx - outY * half, cy + outX * half, cx + outY * half, cy - outX * half], radius: 0 };
+/** What a channel's end paints: a straight face across it, or, with a round cap, a disc round the end point. */
+export function paintedEnd(network: Network, end: number): Painted {
+  const { pieces } = network.trace.near;
+  const { piece, x, y, outX, outY } = endPlace(network, end);
+  const half = pieces.half[piece];
+  const { linecap } = network.chip.channels[pieces.channel[piece]];
+  if (linecap === 'round') return disc(x, y, half);
+  const face = faceOf({ x, y, outX, outY, beyondMm: linecap === 'square' ? half : 0, round: null }, half);
+  return { lines: [face], radius: 0, corners: null };
 }
 
 /** True where a piece has an end that is cut flat, or is next to one on a curve, so that its painted area is not just all within half a width of it. */
@@ -101,31 +66,8 @@ export function hasFlatEnd(chip: Chip, pieces: Pieces, i: number): boolean {
   return linecap === 'butt' && (isNextToCurvedEnd(pieces, i) || sectorsOf(pieces, i).some(isSector));
 }
 
-/** Straight sides (with the radius that goes round them) of the painted area of a piece. */
-export function outlineOf(chip: Chip, pieces: Pieces, i: number): { lines: Line[]; radii: number[] } {
-  const lines: Line[] = [];
-  const radii: number[] = [];
-  for (const part of partsOf(chip, pieces, i)) {
-    for (const line of part.lines) {
-      lines.push(line);
-      radii.push(part.radius);
-    }
-  }
-  return { lines, radii };
-}
-
 export function lineOf(pieces: Pieces, i: number): Line {
   return [pieces.x1[i], pieces.y1[i], pieces.x2[i], pieces.y2[i]];
-}
-
-function gapToPart(chip: Chip, pieces: Pieces, i: number, other: Part): Closest {
-  let best: Closest | null = null;
-  for (const part of partsOf(chip, pieces, i)) {
-    const gap = gapOfParts(part, other);
-    best = best === null ? gap : nearer(best, gap);
-  }
-  // partsOf never gives an empty list.
-  return best as Closest;
 }
 
 /** The piece as straight lines that its curve departs from by no more than FINE_MM. */
@@ -142,7 +84,8 @@ function linesOf(pieces: Pieces, i: number): readonly Line[] {
   });
 }
 
-function partsOf(chip: Chip, pieces: Pieces, i: number): Part[] {
+/** The painted area of a piece; at least one part. */
+export function paintedParts(chip: Chip, pieces: Pieces, i: number): Painted[] {
   const { linecap } = chip.channels[pieces.channel[i]];
   const half = pieces.half[i];
   const flatStart = linecap !== 'round' && !startsAtVertex(pieces, i);
@@ -155,73 +98,67 @@ function partsOf(chip: Chip, pieces: Pieces, i: number): Part[] {
     linecap === 'butt' ? sectorsOf(pieces, i) : [ROUND, ROUND];
   const isWhole = !flatStart && !flatEnd && !isPlain && !isSector(atStart) && !isSector(atEnd);
   if (isWhole) return [{ lines, radius: half, corners: null }];
-  const beyond = linecap === 'square' ? half : 0;
-  const parts: Part[] = [];
-  lines.forEach((line, k) => {
-    const start = flatStart && k === 0 ? 2 * pieces.centreline[i] : -1;
-    const end = flatEnd && k === lines.length - 1 ? 2 * pieces.centreline[i] + 1 : -1;
-    const rounds: readonly (Rounding | null)[] = isPlain
-      ? NO_ROUNDS
-      : [k === 0 ? atStart : ROUND, k === lines.length - 1 ? atEnd : ROUND];
-    if (start < 0 && end < 0 && rounds.every((round) => round === ROUND))
-      parts.push({ lines: [line], radius: half, corners: null });
-    else addFlatParts(parts, pieces, line, half, beyond, start, end, rounds);
+  const beyondMm = linecap === 'square' ? half : 0;
+  const flatAt = (end: number, x: number, y: number): LineEnd => {
+    return { x, y, outX: pieces.outX[end], outY: pieces.outY[end], beyondMm, round: null };
+  };
+  const c = pieces.centreline[i];
+  return lines.flatMap((line, k) => {
+    const [ax, ay, bx, by] = line;
+    const isFirst = k === 0;
+    const isLast = k === lines.length - 1;
+    const length = Math.hypot(bx - ax, by - ay);
+    const [ux, uy] = [(bx - ax) / length, (by - ay) / length];
+    const roundStart = isPlain ? null : isFirst ? atStart : ROUND;
+    const roundEnd = isPlain ? null : isLast ? atEnd : ROUND;
+    const start =
+      isFirst && flatStart
+        ? flatAt(2 * c, ax, ay)
+        : { x: ax, y: ay, outX: -ux, outY: -uy, beyondMm: 0, round: roundStart };
+    const end =
+      isLast && flatEnd
+        ? flatAt(2 * c + 1, bx, by)
+        : { x: bx, y: by, outX: ux, outY: uy, beyondMm: 0, round: roundEnd };
+    if (start.round === ROUND && end.round === ROUND) return [{ lines: [line], radius: half, corners: null }];
+    return partsBetween(start, end, half);
   });
-  return parts;
 }
 
-/** A straight line whose area is cut flat at the ends named, square to the channel there; −1: round, if wanted. */
-function addFlatParts(
-  into: Part[],
-  pieces: Pieces,
-  [ax, ay, bx, by]: Line,
-  half: number,
-  beyond: number,
-  start: number,
-  end: number,
-  rounds: readonly (Rounding | null)[],
-): void {
-  const { outX, outY } = pieces;
-  const length = Math.hypot(bx - ax, by - ay);
-  const ux = (bx - ax) / length;
-  const uy = (by - ay) / length;
-  const [sx, sy] = start < 0 ? [ux, uy] : [-outX[start], -outY[start]];
-  const [ex, ey] = end < 0 ? [ux, uy] : [outX[end], outY[end]];
-  const atStart = start < 0 ? 0 : beyond;
-  const atEnd = end < 0 ? 0 : beyond;
-  const [px, py] = [ax - sx * atStart, ay - sy * atStart];
-  const [qx, qy] = [bx + ex * atEnd, by + ey * atEnd];
-  const corners = [
-    [px - sy * half, py + sx * half],
-    [qx - ey * half, qy + ex * half],
-    [qx + ey * half, qy - ex * half],
-    [px + sy * half, py - sx * half],
-  ] as const;
-  into.push(areaOf(corners));
-  if (start < 0) addRound(into, rounds[0], ax, ay, -ux, -uy, half);
-  if (end < 0) addRound(into, rounds[1], bx, by, ux, uy, half);
+/** One end of a straight line, the direction out of it, and the round there; flat, so far beyond it, where there is none. */
+interface LineEnd {
+  readonly x: number;
+  readonly y: number;
+  readonly outX: number;
+  readonly outY: number;
+  readonly beyondMm: number;
+  readonly round: Rounding | null;
 }
 
-const NO_ROUNDS: readonly null[] = [null, null];
+/** The straight face of an end across the line. */
+function faceOf({ x, y, outX, outY, beyondMm }: LineEnd, half: number): Line {
+  const cx = x + outX * beyondMm;
+  const cy = y + outY * beyondMm;
+  return [cx - outY * half, cy + outX * half, cx + outY * half, cy - outX * half];
+}
 
-/** The round at (x, y), where a line ends in direction (ux, uy). */
-function addRound(
-  into: Part[],
-  rounding: Rounding | null,
-  x: number,
-  y: number,
-  ux: number,
-  uy: number,
-  half: number,
-): void {
-  if (rounding === null) return;
-  if (rounding === ROUND) {
-    into.push(disc(x, y, half));
-    return;
-  }
-  const { angle, side } = turnOf(ux, uy, rounding);
+function partsBetween(start: LineEnd, end: LineEnd, half: number): Painted[] {
+  const [px, py, qx, qy] = faceOf(start, half);
+  const [rx, ry, sx, sy] = faceOf(end, half);
+  const area = areaOf([
+    [qx, qy],
+    [rx, ry],
+    [sx, sy],
+    [px, py],
+  ]);
+  return [area, ...roundAt(start, half), ...roundAt(end, half)];
+}
+
+function roundAt({ x, y, outX: ux, outY: uy, round }: LineEnd, half: number): Painted[] {
+  if (round === null) return [];
+  if (round === ROUND) return [disc(x, y, half)];
+  const { angle, side } = turnOf(ux, uy, round);
   const count = Math.ceil(angle / 2 / Math.acos(Math.max(0.5, 1 - FINE_MM / half)));
-  if (count === 0) return;
+  if (count === 0) return [];
   const corners: [number, number][] = [[x, y]];
   for (let k = 0; k <= count; k++) {
     const turned = (angle * k) / count;
@@ -229,10 +166,10 @@ function addRound(
     const across = side * half * Math.cos(turned);
     corners.push([x + along * ux - across * uy, y + along * uy + across * ux]);
   }
-  into.push(areaOf(corners));
+  return [areaOf(corners)];
 }
 
-function areaOf(corners: readonly (readonly [number, number])[]): Part {
+function areaOf(corners: readonly (readonly [number, number])[]): Painted {
   const lines = corners.map(([x, y], k): Line => [x, y, ...corners[(k + 1) % corners.length]]);
   return { lines, radius: 0, corners };
 }
@@ -246,12 +183,13 @@ function isSector(rounding: Rounding | null): boolean {
   return rounding !== null && rounding !== ROUND;
 }
 
-function disc(x: number, y: number, radius: number): Part {
+function disc(x: number, y: number, radius: number): Painted {
   return { lines: [[x, y, x, y]], radius, corners: null };
 }
 
-function gapOfParts(one: Part, two: Part): Closest {
-  const closest = closestOf(one.lines, two.lines);
+/** Material between two painted areas, mm; negative where they overlap. */
+export function gapOf(one: Painted, two: Painted): Closest {
+  const closest = leastOf(one.lines, two.lines, closestPoints);
   if (contains(one, two.lines[0]) || contains(two, one.lines[0])) {
     return { ...closest, distanceMm: -closest.distanceMm - one.radius - two.radius };
   }
@@ -268,19 +206,16 @@ function gapOfParts(one: Part, two: Part): Closest {
   };
 }
 
-/** Of two lists that are not empty. */
-function closestOf(one: readonly Line[], two: readonly Line[]): Closest {
-  let best: Closest | null = null;
-  for (const a of one) {
-    for (const b of two) {
-      const gap = closestPoints(a, b);
-      best = best === null ? gap : nearer(best, gap);
-    }
-  }
-  return best as Closest;
+const FARTHEST: Closest = { distanceMm: Infinity, x1: NaN, y1: NaN, x2: NaN, y2: NaN };
+
+/** The smallest of all gaps between the members of two lists that are not empty; of equals the first. */
+function leastOf<T>(ones: readonly T[], twos: readonly T[], measure: (one: T, two: T) => Closest): Closest {
+  let best = FARTHEST;
+  for (const one of ones) for (const two of twos) best = nearer(best, measure(one, two));
+  return best;
 }
 
-function contains({ corners }: Part, [x, y]: Line): boolean {
+function contains({ corners }: Painted, [x, y]: Line): boolean {
   if (corners === null) return false;
   let side = 0;
   for (let k = 0; k < corners.length; k++) {

@@ -1,4 +1,7 @@
+import { grouped } from '../by-key.ts';
+import { placeOn } from '../geometry/on-piece.ts';
 import { pieceAt } from '../geometry/pieces.ts';
+import { type Groups, itemsOf, toGroups } from '../groups.ts';
 import type { Network } from '../network/types.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
 
@@ -10,17 +13,15 @@ import { type FindingContext, oncePerContext } from './context.ts';
  * are asked for, so each question is a search of a small neighbourhood (E. W. Dijkstra, Numer. Math. 1 (1959) 269), kept
  * for the next one.
  */
-export class ChannelPaths {
+class ChannelPaths {
   private readonly network: Network;
   /** Vertex at each arc's start and end: 2a, 2a + 1. */
   readonly sideVertex: Int32Array;
   readonly vertexCount: number;
-  /** Sides of vertex v are sides[firstSide[v]] … sides[firstSide[v + 1] − 1], as 2·arc + (1 at the arc's end). */
-  readonly firstSide: Int32Array;
-  readonly sides: Int32Array;
-  private readonly firstWell: Int32Array;
-  private readonly wellFrom: Float64Array;
-  private readonly wellTo: Float64Array;
+  /** Sides of vertices, as 2·arc + (1 at the arc's end). */
+  private readonly sides: Groups;
+  /** Places of wells on centrelines: indices of the trace's place columns. */
+  private readonly wells: Groups;
   private readonly known = new Map<
     number,
     { readonly withinMm: number; readonly reached: Map<number, number> }
@@ -28,44 +29,29 @@ export class ChannelPaths {
 
   constructor(network: Network) {
     this.network = network;
-    const { trace } = network;
+    const { trace, nodePort } = network;
     const { sideVertex, vertexCount } = toVertices(network);
     this.sideVertex = sideVertex;
     this.vertexCount = vertexCount;
-    this.firstSide = new Int32Array(vertexCount + 1);
-    for (const vertex of sideVertex) this.firstSide[vertex + 1]++;
-    for (let v = 0; v < vertexCount; v++) this.firstSide[v + 1] += this.firstSide[v];
-    const fill = this.firstSide.slice();
-    this.sides = new Int32Array(2 * trace.arcCount);
-    for (let side = 0; side < 2 * trace.arcCount; side++) this.sides[fill[sideVertex[side]]++] = side;
-
-    const n = trace.near.pieces.centrelineCount;
-    const places: number[] = [];
-    this.firstWell = new Int32Array(n + 1);
+    this.sides = toGroups(vertexCount, sideVertex);
+    const { firstPlace, placeCentreline } = trace;
+    const inWells = new Int32Array(placeCentreline.length).fill(-1);
     for (let node = 0; node < network.nodeCount; node++) {
-      if (network.nodePort[node] < 0) continue;
-      for (let k = trace.firstPlace[node]; k < trace.firstPlace[node + 1]; k++) {
-        places.push(k);
-        this.firstWell[trace.placeCentreline[k] + 1]++;
-      }
+      if (nodePort[node] < 0) continue;
+      for (let k = firstPlace[node]; k < firstPlace[node + 1]; k++) inWells[k] = placeCentreline[k];
     }
-    for (let c = 0; c < n; c++) this.firstWell[c + 1] += this.firstWell[c];
-    const next = this.firstWell.slice();
-    this.wellFrom = new Float64Array(places.length);
-    this.wellTo = new Float64Array(places.length);
-    for (const k of places) {
-      const at = next[trace.placeCentreline[k]]++;
-      this.wellFrom[at] = trace.placeFrom[k];
-      this.wellTo[at] = trace.placeTo[k];
-    }
+    this.wells = toGroups(trace.near.pieces.centrelineCount, inWells);
+  }
+
+  /** Sides of arcs that come to a vertex. */
+  sidesAt(vertex: number): Int32Array {
+    return itemsOf(this.sides, vertex);
   }
 
   /** Whether position s of a centreline lies in an open well. */
   isInWell(centreline: number, s: number): boolean {
-    for (let k = this.firstWell[centreline]; k < this.firstWell[centreline + 1]; k++) {
-      if (s > this.wellFrom[k] && s < this.wellTo[k]) return true;
-    }
-    return false;
+    const { placeFrom, placeTo } = this.network.trace;
+    return itemsOf(this.wells, centreline).some((k) => s > placeFrom[k] && s < placeTo[k]);
   }
 
   /** The arc that holds position s, or the one nearest to it; −1 when the centreline has none (all of it open well). */
@@ -74,7 +60,6 @@ export class ChannelPaths {
     let low = firstArc[centreline];
     let high = firstArc[centreline + 1] - 1;
     if (high < low) return -1;
-    const first = low;
     while (low < high) {
       const middle = (low + high + 1) >> 1;
       if (arcFrom[middle] <= s) low = middle;
@@ -84,7 +69,7 @@ export class ChannelPaths {
     if (s > arcTo[low] && nextArc < firstArc[centreline + 1] && arcFrom[nextArc] - s < s - arcTo[low]) {
       return nextArc;
     }
-    return Math.max(first, low);
+    return low;
   }
 
   /** Adds the positions of arc ends strictly between two positions of a centreline. */
@@ -101,22 +86,15 @@ export class ChannelPaths {
 
   /** The ways from one arc to another, none longer than withinMm between the arcs' ends. */
   routes(arcA: number, arcB: number, withinMm: number): Route[] {
-    const { arcFrom, arcTo } = this.network.trace;
-    const routes: Route[] = [];
-    if (arcA === arcB) routes.push({ kind: 'along' });
-    for (const sideA of [0, 1]) {
-      for (const sideB of [0, 1]) {
-        const vertexA = this.sideVertex[2 * arcA + sideA];
-        const vertexB = this.sideVertex[2 * arcB + sideB];
-        const lengthMm = this.between(vertexA, vertexB, withinMm);
+    const routes: Route[] = arcA === arcB ? [{ kind: 'along' }] : [];
+    for (const leave of [2 * arcA, 2 * arcA + 1]) {
+      for (const enter of [2 * arcB, 2 * arcB + 1]) {
+        const [from, to] = [this.sideVertex[leave], this.sideVertex[enter]];
+        const lengthMm = this.between(from, to, withinMm);
         if (lengthMm > withinMm) continue;
-        routes.push({
-          kind: 'over',
-          leaveAt: sideA === 0 ? arcFrom[arcA] : arcTo[arcA],
-          enterAt: sideB === 0 ? arcFrom[arcB] : arcTo[arcB],
-          lengthMm,
-          vertex: vertexA === vertexB ? vertexA : -1,
-        });
+        const leaveAt = positionOf(this.network, leave);
+        const enterAt = positionOf(this.network, enter);
+        routes.push({ kind: 'over', leaveAt, enterAt, lengthMm, vertex: from === to ? from : -1 });
       }
     }
     return routes;
@@ -148,8 +126,7 @@ export class ChannelPaths {
       }
       open.delete(vertex);
       settled.set(vertex, least);
-      for (let k = this.firstSide[vertex]; k < this.firstSide[vertex + 1]; k++) {
-        const side = this.sides[k];
+      for (const side of this.sidesAt(vertex)) {
         const arc = side >> 1;
         const other = this.sideVertex[side ^ 1];
         const distance = least + arcTo[arc] - arcFrom[arc];
@@ -184,12 +161,23 @@ export function routeLength(route: Route, s: number, t: number): number {
 
 export const channelPaths = oncePerContext(({ network }) => new ChannelPaths(network));
 
+/** Sides of arcs at each place where two or more join outside wells. */
+export function* joinsOf(context: FindingContext): Iterable<Int32Array> {
+  const { nodeCount, nodePort } = context.network;
+  const paths = channelPaths(context);
+  for (let v = 0; v < paths.vertexCount; v++) {
+    if (v < nodeCount && nodePort[v] >= 0) continue;
+    const sides = paths.sidesAt(v);
+    if (sides.length >= 2) yield sides;
+  }
+}
+
 /** Point of a centreline at position s; beyond a drawn end straight on. Returns [x, y] in mm. */
-export function pointOn({ trace }: Network, centreline: number, s: number): readonly [number, number] {
+export function pointOn({ trace }: Network, centreline: number, s: number): Point {
   const { pieces } = trace.near;
   const i = pieceAt(pieces, centreline, s);
-  const t = (s - pieces.start[i]) / pieces.length[i];
-  return [pieces.x1[i] + t * (pieces.x2[i] - pieces.x1[i]), pieces.y1[i] + t * (pieces.y2[i] - pieces.y1[i])];
+  const { x, y } = placeOn(pieces, i, (s - pieces.start[i]) / pieces.length[i]);
+  return [x, y];
 }
 
 /** A neighbourhood with more vertices than this within a few widths is no drawing that anyone could make; bounds the time. */
@@ -200,85 +188,78 @@ function toVertices(network: Network): { sideVertex: Int32Array; vertexCount: nu
   const { trace } = network;
   const sideVertex = new Int32Array(2 * trace.arcCount);
   let vertexCount = network.nodeCount;
-  const loose = new Map<number, number[]>();
   for (let a = 0; a < trace.arcCount; a++) {
     sideVertex[2 * a] = trace.arcNodeFrom[a];
     sideVertex[2 * a + 1] = trace.arcNodeTo[a];
-    for (const side of [2 * a, 2 * a + 1]) {
-      if (sideVertex[side] >= 0) continue;
-      const list = loose.get(trace.arcReach[a]);
-      if (list === undefined) loose.set(trace.arcReach[a], [side]);
-      else list.push(side);
-    }
   }
-  for (const sides of loose.values()) {
-    const points = sides.map((side) => sidePoint(network, side));
-    const taken = new Uint8Array(sides.length);
-    for (let k = 0; k < sides.length; k++) {
-      if (taken[k] === 1) continue;
-      taken[k] = 1;
-      sideVertex[sides[k]] = vertexCount;
-      let partner = -1;
-      let least = Number.POSITIVE_INFINITY;
-      for (let m = k + 1; m < sides.length; m++) {
-        if (taken[m] === 1) continue;
-        const distance = Math.hypot(points[m][0] - points[k][0], points[m][1] - points[k][1]);
-        if (distance < least) {
-          least = distance;
-          partner = m;
-        }
-      }
-      if (partner >= 0) {
-        taken[partner] = 1;
-        sideVertex[sides[partner]] = vertexCount;
-      }
+  const loose = Array.from(sideVertex.keys()).filter((side) => sideVertex[side] < 0);
+  for (const sides of grouped(loose, (side) => trace.arcReach[side >> 1]).values()) {
+    const points = new Map(sides.map((side) => [side, sidePoint(network, side)]));
+    for (const [side, point] of points) {
+      points.delete(side);
+      const partner = nearestOf(points, point);
+      points.delete(partner);
+      sideVertex[side] = vertexCount;
+      if (partner >= 0) sideVertex[partner] = vertexCount;
       vertexCount++;
     }
   }
   return { sideVertex, vertexCount };
 }
 
+type Point = readonly [x: number, y: number];
+
+/** The side that lies nearest to a place, of equals the first; −1 when there is none. */
+function nearestOf(points: ReadonlyMap<number, Point>, [x, y]: Point): number {
+  let nearest = -1;
+  let least = Number.POSITIVE_INFINITY;
+  for (const [side, [px, py]] of points) {
+    const distance = Math.hypot(px - x, py - y);
+    if (distance < least) {
+      least = distance;
+      nearest = side;
+    }
+  }
+  return nearest;
+}
+
 /** Where an arc's start (even side) or end (odd side) lies. */
-export function sidePoint(network: Network, side: number): readonly [number, number] {
-  const { trace } = network;
-  const arc = side >> 1;
-  return pointOn(network, trace.arcCentreline[arc], (side & 1) === 0 ? trace.arcFrom[arc] : trace.arcTo[arc]);
+export function sidePoint(network: Network, side: number): Point {
+  return pointOn(network, network.trace.arcCentreline[side >> 1], positionOf(network, side));
 }
 
-/** Whether the way along the channels from one place on a centreline to another is within a length (mm). */
-export function isNearAlong(
-  context: FindingContext,
-  centreline: number,
-  s: number,
-  other: number,
-  t: number,
-  withinMm: number,
-): boolean {
+function positionOf({ trace }: Network, side: number): number {
+  return (side & 1) === 0 ? trace.arcFrom[side >> 1] : trace.arcTo[side >> 1];
+}
+
+/** A position on a centreline, mm. */
+export interface OnCentreline {
+  readonly c: number;
+  readonly s: number;
+}
+
+/** Whether the way along the channels from one place to another is within a length (mm). */
+export function isNearAlong(context: FindingContext, a: OnCentreline, b: OnCentreline, mm: number): boolean {
   const paths = channelPaths(context);
-  const arcA = paths.arcAt(centreline, s);
-  const arcB = paths.arcAt(other, t);
+  const arcA = paths.arcAt(a.c, a.s);
+  const arcB = paths.arcAt(b.c, b.s);
   if (arcA < 0 || arcB < 0) return false;
-  return paths.routes(arcA, arcB, withinMm).some((route) => routeLength(route, s, t) <= withinMm);
+  return paths.routes(arcA, arcB, mm).some((route) => routeLength(route, a.s, b.s) <= mm);
 }
 
-/** Whether the way along the channels from a place on a centreline to a well is within a length (mm). */
+/** Whether the way along the channels from a place to a well is within a length (mm). */
 export function isNearPort(
   context: FindingContext,
-  centreline: number,
-  s: number,
+  { c, s }: OnCentreline,
   port: number,
-  withinMm: number,
+  mm: number,
 ): boolean {
   const { network } = context;
-  const { arcFrom, arcTo } = network.trace;
   const paths = channelPaths(context);
-  const arc = paths.arcAt(centreline, s);
+  const arc = paths.arcAt(c, s);
   if (arc < 0) return true;
-  const node = network.portNode[port];
-  return (
-    Math.min(
-      paths.between(node, paths.sideVertex[2 * arc], withinMm) + Math.abs(s - arcFrom[arc]),
-      paths.between(node, paths.sideVertex[2 * arc + 1], withinMm) + Math.abs(s - arcTo[arc]),
-    ) <= withinMm
-  );
+  const wayTo = (side: number): number =>
+    paths.between(network.portNode[port], paths.sideVertex[side], mm) +
+    Math.abs(s - positionOf(network, side));
+  return Math.min(wayTo(2 * arc), wayTo(2 * arc + 1)) <= mm;
 }

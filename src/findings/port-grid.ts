@@ -1,6 +1,8 @@
 import type { Port, Sourced } from '../chip/types.ts';
+import { Bounds } from '../geometry/bounds.ts';
+import { linesAlong } from './closest.ts';
 import type { FindingContext } from './context.ts';
-import { isAbove, isBelow, toFinding } from './rule.ts';
+import { isAbove, isBelow, lengthMeasure, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
 import { distanceText, limitText, listText, moveText, placeText } from './words.ts';
 
@@ -36,44 +38,39 @@ export function portGridFaults(context: FindingContext, limit: Sourced<number>):
   const grid = bestGrid(context, pitchMm);
   const pitchText = limitText(distanceText(pitchMm), limit);
   const range = HOLE_DIAMETERS_MM.find(({ pitch }) => Math.abs(pitch - pitchMm) < 1e-6);
-  const findings: Finding[] = [];
-  for (const port of ports) {
-    const off = grid === null ? null : offset(grid, port, pitchMm);
+  return ports.flatMap((port) => {
+    const { name, xMm, yMm } = port;
+    const off = grid === null ? NOT_OFF : offset(grid, port, pitchMm);
+    const offMm = Math.hypot(off.x, off.y);
     const diameterMm = 2 * port.radiusMm;
     const faults: string[] = [];
     const fixes: string[] = [];
-    const isOff = off !== null && isAbove(Math.hypot(off.x, off.y), OFF_GRID_MM);
-    if (off !== null && isOff) {
-      faults.push(`its centre is ${distanceText(Math.hypot(off.x, off.y))} off the ${pitchText} grid`);
-      fixes.push(
-        `move ${port.name} ${moveText(Math.hypot(off.x, off.y))} to ${placeText(port.xMm - off.x, port.yMm - off.y)}`,
-      );
+    const isOff = isAbove(offMm, OFF_GRID_MM);
+    if (isOff) {
+      faults.push(`its centre is ${distanceText(offMm)} off the ${pitchText} grid`);
+      fixes.push(`move ${name} ${moveText(offMm)} to ${placeText(xMm - off.x, yMm - off.y)}`);
     }
-    const isOutside =
-      range !== undefined && (isBelow(diameterMm, range.least) || isAbove(diameterMm, range.most));
-    if (range !== undefined && isOutside) {
+    const fitting = range === undefined ? diameterMm : diameterMm < range.least ? range.least : range.most;
+    if (range !== undefined && (isBelow(diameterMm, range.least) || isAbove(diameterMm, range.most))) {
       faults.push(
         `its hole is ${distanceText(diameterMm)} wide, and at this pitch ${distanceText(range.least)} to ${distanceText(range.most)} is usual`,
       );
-      fixes.push(`make its hole ${distanceText(diameterMm < range.least ? range.least : range.most)} wide`);
+      fixes.push(`make its hole ${distanceText(fitting)} wide`);
     }
-    if (faults.length === 0) continue;
-    const nearestDiameter = range === undefined ? 0 : diameterMm < range.least ? range.least : range.most;
-    findings.push(
+    if (faults.length === 0) return [];
+    return [
       toFinding('port-grid', 'caution', {
-        message: `${port.name} does not fit the port grid: ${listText(faults)}`,
+        message: `${name} does not fit the port grid: ${listText(faults)}`,
         fix: listText(fixes),
-        at: { xMm: port.xMm, yMm: port.yMm },
-        names: [port.name],
-        measure:
-          isOff && off !== null
-            ? { value: Math.hypot(off.x, off.y) / 1e3, limit: OFF_GRID_MM / 1e3, unit: 'm' }
-            : { value: diameterMm / 1e3, limit: nearestDiameter / 1e3, unit: 'm' },
+        at: port,
+        names: [name],
+        measure: isOff ? lengthMeasure(offMm, OFF_GRID_MM) : lengthMeasure(diameterMm, fitting),
       }),
-    );
-  }
-  return findings;
+    ];
+  });
 }
+
+const NOT_OFF = { x: 0, y: 0 };
 
 interface Grid {
   /** A point of the grid, and unit vectors of its rows and columns. */
@@ -124,30 +121,19 @@ function cornerGrids(rings: readonly Float64Array[]): Grid[] {
   let longest = 0;
   let ux = 1;
   let uy = 0;
-  for (const ring of rings) {
-    for (let k = 0; k + 3 < ring.length; k += 2) {
-      const dx = ring[k + 2] - ring[k];
-      const dy = ring[k + 3] - ring[k + 1];
-      const length = Math.hypot(dx, dy);
-      if (length > longest * (1 + 1e-9)) {
-        longest = length;
-        ux = dx / length;
-        uy = dy / length;
-      }
-    }
+  for (const [ax, ay, bx, by] of rings.flatMap(linesAlong)) {
+    const length = Math.hypot(bx - ax, by - ay);
+    if (length <= longest * (1 + 1e-9)) continue;
+    longest = length;
+    ux = (bx - ax) / length;
+    uy = (by - ay) / length;
   }
-  let [left, right] = [Number.POSITIVE_INFINITY, Number.NEGATIVE_INFINITY];
-  let [low, high] = [Number.POSITIVE_INFINITY, Number.NEGATIVE_INFINITY];
+  const bounds = new Bounds();
   for (const ring of rings) {
-    for (let k = 0; k + 1 < ring.length; k += 2) {
-      const along = ring[k] * ux + ring[k + 1] * uy;
-      const across = ring[k + 1] * ux - ring[k] * uy;
-      left = Math.min(left, along);
-      right = Math.max(right, along);
-      low = Math.min(low, across);
-      high = Math.max(high, across);
-    }
+    for (let k = 0; k + 1 < ring.length; k += 2)
+      bounds.add(ring[k] * ux + ring[k + 1] * uy, ring[k + 1] * ux - ring[k] * uy);
   }
+  const { left, right, top: low, bottom: high } = bounds;
   const corners = [
     [left + FIRST_POINT_MM, low + FIRST_POINT_MM],
     [right - FIRST_POINT_MM, low + FIRST_POINT_MM],

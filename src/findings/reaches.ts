@@ -1,26 +1,15 @@
+import { itemsOf, toGroups } from '../groups.ts';
 import { reachName } from '../network/names.ts';
 import type { Network } from '../network/types.ts';
+import type { Place } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
+import type { Finding } from './types.ts';
 
-/** Reaches of each channel in drawn order: those of channel c are of[first[c]] … of[first[c + 1] − 1]. */
-interface ChannelReaches {
-  readonly first: Int32Array;
-  readonly of: Int32Array;
-}
-
-const byChannel = oncePerContext(({ network, chip }): ChannelReaches => {
-  const first = new Int32Array(chip.channels.length + 1);
-  for (let c = 0; c < chip.channels.length; c++) first[c + 1] = first[c] + network.channelReachCount[c];
-  const of = new Int32Array(network.reachCount);
-  for (let r = 0; r < network.reachCount; r++)
-    of[first[network.reachChannel[r]] + network.reachNumber[r] - 1] = r;
-  return { first, of };
-});
+const byChannel = oncePerContext(({ network, chip }) => toGroups(chip.channels.length, network.reachChannel));
 
 /** The reaches of one channel, in drawn order. */
 export function reachesOf(context: FindingContext, channel: number): Int32Array {
-  const { first, of } = byChannel(context);
-  return of.subarray(first[channel], first[channel + 1]);
+  return itemsOf(byChannel(context), channel);
 }
 
 /** The worst reach of a channel by some measure, and how many reaches are at fault. */
@@ -58,6 +47,39 @@ export function worstReach<T>(
 /** Faults that differ by rounding only are equal, so that a turned drawing points at the same place. */
 const SAME = 1e-9;
 
+/** What a finding at a channel's worst reach needs besides what it says. */
+export interface AtWorst {
+  readonly reach: number;
+  readonly name: string;
+  /** As of othersText. */
+  readonly others: string;
+  readonly place: Place;
+  readonly names: readonly string[];
+}
+
+/** One finding for each channel at fault, at its worst reach. */
+export function perChannel<T>(
+  context: FindingContext,
+  look: (reach: number, channel: number) => T | null,
+  badness: (fault: T) => number,
+  say: (fault: T, worst: AtWorst) => Finding,
+): Finding[] {
+  const { network, chip } = context;
+  return chip.channels.flatMap((_, channel) => {
+    const worst = worstReach(reachesOf(context, channel), (reach) => look(reach, channel), badness);
+    if (worst === null) return [];
+    const { reach, fault } = worst;
+    const at = {
+      reach,
+      name: reachName(network, reach),
+      others: othersText(context, worst),
+      place: middleOfReach(network, reach),
+      names: reachNames(context, worst),
+    };
+    return [say(fault, at)];
+  });
+}
+
 /** The worst reach first, then the channel, then the other reaches at fault. */
 export function reachNames({ network, chip }: FindingContext, { reach, faulty }: Worst<unknown>): string[] {
   const channel = chip.channels[network.reachChannel[reach]].name;
@@ -74,23 +96,15 @@ export function othersText({ network, chip }: FindingContext, { reach, faulty }:
 }
 
 /** Middle of a reach along its centreline, mm. */
-export function middleOfReach(
-  network: Network,
-  reach: number,
-): { readonly xMm: number; readonly yMm: number } {
-  const first = network.firstSegment[reach];
-  const end = network.firstSegment[reach + 1];
+export function middleOfReach(network: Network, reach: number): Place {
   let total = 0;
-  for (let s = first; s < end; s++) total += lengthOf(network, s);
+  for (let s = network.firstSegment[reach]; s < network.firstSegment[reach + 1]; s++)
+    total += lengthOf(network, s);
   return alongReach(network, reach, total / 2);
 }
 
 /** The place `alongMm` from the reach's first node, mm; clamped to its ends. */
-export function alongReach(
-  network: Network,
-  reach: number,
-  alongMm: number,
-): { readonly xMm: number; readonly yMm: number } {
+export function alongReach(network: Network, reach: number, alongMm: number): Place {
   const end = network.firstSegment[reach + 1];
   let left = alongMm;
   for (let s = network.firstSegment[reach]; s < end; s++) {

@@ -1,5 +1,6 @@
 import { LIMIT_SLACK } from '../chip/limits.ts';
-import type { Sourced } from '../chip/types.ts';
+import type { Limits, Sourced } from '../chip/types.ts';
+import type { Line, Place } from './closest.ts';
 import type { FindingContext } from './context.ts';
 import type { Finding, NotRun, Severity } from './types.ts';
 
@@ -22,12 +23,13 @@ export interface FindingParts {
   readonly message: string;
   readonly fix: string;
   /** Where to look; null for a fault of the whole chip. */
-  readonly at: { readonly xMm: number; readonly yMm: number } | null;
+  readonly at: Place | null;
   /** The first is the one to look at. */
   readonly names: readonly string[];
   /** SI value and limit of the rule's measure; left out when it has none. A value that does not exist is null. */
   readonly measure?: { readonly value: number | null; readonly limit: number; readonly unit: string };
-  readonly mark?: Finding['mark'];
+  /** The distance to draw at the place, mm; left out or null for none. */
+  readonly mark?: Line | null;
 }
 
 /** A finding that nobody has accepted yet. */
@@ -45,8 +47,17 @@ export function toFinding(rule: string, severity: Severity, parts: FindingParts)
     limit: measure?.limit ?? null,
     unit: measure?.unit ?? null,
     accepted: null,
-    ...(mark === undefined ? {} : { mark }),
+    ...(mark ? { mark: toMark(mark) } : {}),
   };
+}
+
+function toMark([x1Mm, y1Mm, x2Mm, y2Mm]: Line): NonNullable<Finding['mark']> {
+  return { x1Mm, y1Mm, x2Mm, y2Mm };
+}
+
+/** The measure of a rule that looks at lengths of the drawing, mm. */
+export function lengthMeasure(valueMm: number, limitMm: number) {
+  return { value: valueMm / 1e3, limit: limitMm / 1e3, unit: 'm' };
 }
 
 /** A place or value that does not exist is null, never NaN or infinity. */
@@ -68,21 +79,31 @@ export function withoutLimit(rule: string, key: string, { chip }: FindingContext
   return notRun(rule, `limits.${key} is not given and ${process}`);
 }
 
-/** A rule of one limit: run with it, or listed as not run without. */
-export function limitRule<T>(
+/** A rule that needs no limit. */
+export function rule(name: string, run: (context: FindingContext) => readonly Finding[]): Rule {
+  return { names: [name], run: (context) => found(run(context)) };
+}
+
+/** A rule of one limit: run with it, or listed as not run without; `key` as written under `limits` of a run sheet. */
+export function limitRule(
   name: string,
   key: string,
-  limitOf: (context: FindingContext) => Sourced<T> | null,
-  run: (context: FindingContext, limit: Sourced<T>) => readonly Finding[],
+  field: LimitField,
+  run: (context: FindingContext, limit: Sourced<number>) => readonly Finding[],
 ): Rule {
   return {
     names: [name],
     run: (context) => {
-      const limit = limitOf(context);
+      const limit = context.run.limits[field];
       return limit === null ? withoutLimit(name, key, context) : found(run(context, limit));
     },
   };
 }
+
+/** Limits that are one number, or not given. */
+type LimitField = {
+  [K in keyof Limits]: Limits[K] extends Sourced<number> | null ? K : never;
+}[keyof Limits];
 
 export function isBelow(value: number, limit: number): boolean {
   return value < limit - LIMIT_SLACK * Math.abs(limit);

@@ -1,3 +1,5 @@
+import type { Line } from './closest.ts';
+
 /** A stretch of one centreline that faces a stretch of another (or of its own). Positions in mm along each. */
 export interface Facing {
   readonly a: number;
@@ -7,6 +9,47 @@ export interface Facing {
   /** Positions on b that face `from` and `to`. */
   readonly otherFrom: number;
   readonly otherTo: number;
+}
+
+/** A place where two centrelines, or two stretches of one, leave little or nothing between them. */
+export interface Wall {
+  /** Pieces at the thinnest place. */
+  readonly pieceA: number;
+  readonly pieceB: number;
+  readonly centrelineA: number;
+  readonly centrelineB: number;
+  /** Extent on centreline A and on B, mm. */
+  readonly fromA: number;
+  readonly toA: number;
+  readonly fromB: number;
+  readonly toB: number;
+  /** Length of thin wall or overlap along A, mm. */
+  readonly lengthMm: number;
+  /** Thinnest material; 0 or less where the painted areas touch or overlap. */
+  readonly gapMm: number;
+  /** From wall to wall at the thinnest place. */
+  readonly mark: Line;
+}
+
+/** The centrelines of a group of stretches, and its extent on them. */
+export function extentOf(
+  group: readonly Facing[],
+): Pick<Wall, 'centrelineA' | 'centrelineB' | 'fromA' | 'toA' | 'fromB' | 'toB'> {
+  const [{ a, b, from: fromA }] = group;
+  const [, toA] = rangeOf(group.map(({ to }) => to));
+  const [fromB, toB] = rangeOf(group.flatMap(({ otherFrom, otherTo }) => [otherFrom, otherTo]));
+  return { centrelineA: a, centrelineB: b, fromA, toA, fromB, toB };
+}
+
+/** Least and most of some numbers; Infinity and −Infinity of none. */
+export function rangeOf(values: Iterable<number>): readonly [least: number, most: number] {
+  let least = Number.POSITIVE_INFINITY;
+  let most = Number.NEGATIVE_INFINITY;
+  for (const value of values) {
+    least = Math.min(least, value);
+    most = Math.max(most, value);
+  }
+  return [least, most];
 }
 
 /**

@@ -1,52 +1,33 @@
-import { LIMIT_SLACK } from '../chip/limits.ts';
+import type { Chip } from '../chip/types.ts';
 import type { Nearness } from '../geometry/near.ts';
-import { neighbourPiece, type Pieces } from '../geometry/pieces.ts';
-import { distanceToSegment } from '../geometry/segment.ts';
-import { isInPieceStrip } from '../geometry/strip.ts';
-import { closestPoints, type Line, stretchWithin } from './closest.ts';
+import { placeOn } from '../geometry/on-piece.ts';
+import { closestPoints, type Line, lineBetween, pointLine } from './closest.ts';
 import type { FindingContext } from './context.ts';
 import { liesInThird } from './etched-area.ts';
+import { type FacedWalls, facedWalls, facing, facingTest, gapAt } from './faced-walls.ts';
 import { onlyGrows } from './growth.ts';
-import { gapBetween, hasFlatEnd, lineOf } from './painted.ts';
+import { gapBetween, lineOf } from './painted.ts';
 import { channelPaths, pointOn, type Route, routeLength } from './paths.ts';
-import { coveredLength, type Facing, groupStretches } from './stretches.ts';
+import { coveredLength, extentOf, type Facing, groupStretches, type Wall } from './stretches.ts';
 
 /**
  * Where two channels, or two stretches of one, leave less material between them than a limit, at places further apart
  * along the channels than 4 × (mean width + limit). Nearer than that they are one duct turning or two that part.
  */
-export interface ThinWall {
-  /** Pieces at the thinnest place. */
-  readonly pieceA: number;
-  readonly pieceB: number;
-  readonly centrelineA: number;
-  readonly centrelineB: number;
-  /** Extent on centreline A and on B, mm. */
-  readonly fromA: number;
-  readonly toA: number;
-  readonly fromB: number;
-  readonly toB: number;
-  /** Length of thin wall along A, mm. */
-  readonly lengthMm: number;
-  /** Thinnest material; 0 or less where the painted areas touch or overlap. */
-  readonly gapMm: number;
+export interface ThinWall extends Wall {
   readonly limitMm: number;
-  /** Wall points that face each other at the thinnest place. */
-  readonly mark: Line;
 }
 
 /** One pair of pieces' share of a thin wall. */
 interface ThinStretch extends Facing {
-  readonly i: number;
-  readonly j: number;
+  readonly faced: FacedWalls;
   /** All of piece i that is thin, also where the way along the channels is short. */
   readonly thinFrom: number;
   readonly thinTo: number;
-  readonly apartMm: number;
-  readonly limitMm: number;
   /** Length along the channels from one side to the other, at from and at to. */
   readonly wayFrom: number;
   readonly wayTo: number;
+  /** Material at from and at to, and at the thinnest place. */
   readonly gapFrom: number;
   readonly gapTo: number;
   readonly gapMm: number;
@@ -71,54 +52,57 @@ export function findThinWalls(
     const i = near.pairA[k];
     const j = near.pairB[k];
     const limitMm = limitOf(pieces.channel[i], pieces.channel[j]);
-    if (Number.isNaN(limitMm)) continue;
-    addThinStretches(stretches, context, pieces, i, j, near.pairDistance[k], limitMm);
+    const faced = Number.isNaN(limitMm) ? null : facedWalls(context, near, k, limitMm);
+    if (faced !== null) addThinStretches(stretches, context, faced);
   }
-  return groupStretches(stretches, ({ apartMm }) => apartMm / 2)
+  return groupStretches(stretches, ({ faced }) => faced.apartMm / 2)
     .filter((group) => !isNoWall(context, group))
-    .map((group) => toThinWall(context, pieces, group));
+    .map((group) => toThinWall(context, group));
 }
 
 /** Whether the stretch lies in a third strip, or begins where the two sides part, at either of its ends, and they only move apart from there. */
 function isNoWall(context: FindingContext, group: readonly ThinStretch[]): boolean {
   const first = group[0];
   const last = group.reduce((most, stretch) => (stretch.to > most.to ? stretch : most), first);
+  const start = { stretch: first, s: first.from, t: first.otherFrom, way: first.wayFrom };
+  const end = { stretch: last, s: last.to, t: last.otherTo, way: last.wayTo };
   return (
-    (isInThird(context, first, first.from, first.otherFrom) &&
-      isInThird(context, last, last.to, last.otherTo)) ||
-    partsFrom(context, group, first, first.from, first.otherFrom, first.wayFrom) ||
-    partsFrom(context, group, last, last.to, last.otherTo, last.wayTo)
+    (isInThird(context, start) && isInThird(context, end)) ||
+    partsFrom(context, group, start) ||
+    partsFrom(context, group, end)
   );
 }
 
-function partsFrom(
-  context: FindingContext,
-  group: readonly ThinStretch[],
-  stretch: ThinStretch,
-  s: number,
-  t: number,
-  way: number,
-): boolean {
+/** Where a thin wall begins or ends: positions on a and b, and the way along the channels between them, mm. */
+interface WallEnd {
+  readonly stretch: ThinStretch;
+  readonly s: number;
+  readonly t: number;
+  readonly way: number;
+}
+
+function partsFrom(context: FindingContext, group: readonly ThinStretch[], end: WallEnd): boolean {
+  const { apartMm } = end.stretch.faced;
   const samples = group.flatMap(({ from, to, gapFrom, gapTo, gapMm, thinnestAt }) => [
-    { way: Math.abs(from - s), apart: gapFrom },
-    { way: Math.abs(thinnestAt - s), apart: gapMm },
-    { way: Math.abs(to - s), apart: gapTo },
+    { way: Math.abs(from - end.s), apart: gapFrom },
+    { way: Math.abs(thinnestAt - end.s), apart: gapMm },
+    { way: Math.abs(to - end.s), apart: gapTo },
   ]);
-  if (!onlyGrows(samples, stretch.apartMm, context.chip.joinWithinMm)) return false;
-  if (isInThird(context, stretch, s, t)) return true;
+  if (!onlyGrows(samples, apartMm, context.chip.joinWithinMm)) return false;
+  if (isInThird(context, end)) return true;
   // A group that does not go down to the least way (give or take the jump from one chord of a curve to the next) begins
   // further along: a stretch of its own.
   const farMm = samples.reduce((most, sample) => Math.max(most, sample.way), 0);
-  return way <= 1.25 * stretch.apartMm && partInProportion(context, stretch, s, t, farMm);
+  return end.way <= 1.25 * apartMm && partInProportion(context, end, farMm);
 }
 
 /**
  * Whether both sides lie in one third strip there that both are joined to: two feeders that end side by side in a chamber
  * part at its wall, however far apart their nodes are on its centreline, and in it there is no wall between them.
  */
-function isInThird(context: FindingContext, { a, b, i, j }: ThinStretch, s: number, t: number): boolean {
+function isInThird(context: FindingContext, { stretch: { a, b, faced }, s, t }: WallEnd): boolean {
   const { network } = context;
-  return liesInThird(context, i, j, pointOn(network, a, s), pointOn(network, b, t));
+  return liesInThird(context, faced.i, faced.j, pointOn(network, a, s), pointOn(network, b, t));
 }
 
 /**
@@ -126,16 +110,12 @@ function isInThird(context: FindingContext, { a, b, i, j }: ThinStretch, s: numb
  * ladder, they reach their distance at once and keep it. So the distance is compared with that at half the way; of arms
  * that part along a tangent where they have come apart at all, at most `farMm` further on.
  */
-function partInProportion(
-  context: FindingContext,
-  { a, b, apartMm }: ThinStretch,
-  s: number,
-  t: number,
-  farMm: number,
-): boolean {
+function partInProportion(context: FindingContext, end: WallEnd, farMm: number): boolean {
+  const { stretch, s, t } = end;
+  const { a, b, faced } = stretch;
   const { network } = context;
   const paths = channelPaths(context);
-  const route = shortest(paths.routes(paths.arcAt(a, s), paths.arcAt(b, t), apartMm), s, t);
+  const route = shortest(paths.routes(paths.arcAt(a, s), paths.arcAt(b, t), faced.apartMm), s, t);
   if (route === null) return false;
   if (route.kind === 'along') return isProportional(s, t, (3 * s + t) / 4, (s + 3 * t) / 4);
   // From a port the sides part at its centre, not at the rim where the way begins; and an end that was carried on begins
@@ -144,20 +124,21 @@ function partInProportion(
   const isPort = node >= 0 && node < network.nodeCount && network.nodePort[node] >= 0;
   if (isPort || (node >= 0 && (isCarriedOn(a, route.leaveAt) || isCarriedOn(b, route.enterAt)))) return true;
   // Joined a little way from where they part (drawn at rounding), one side's way begins there, as if it had gone on back.
-  const backA = route.leaveAt - Math.sign(s - route.leaveAt) * route.lengthMm;
-  const backB = route.enterAt - Math.sign(t - route.enterAt) * route.lengthMm;
+  const { leaveAt, enterAt, lengthMm } = route;
+  const backA = leaveAt - Math.sign(s - leaveAt) * lengthMm;
+  const backB = enterAt - Math.sign(t - enterAt) * lengthMm;
   for (let times = 1; ; times *= 2) {
-    const onA = route.leaveAt + times * (s - route.leaveAt);
-    const onB = route.enterAt + times * (t - route.enterAt);
-    if (
-      isProportional(onA, onB, (onA + route.leaveAt) / 2, (onB + route.enterAt) / 2) ||
-      isProportional(onA, onB, (onA + backA) / 2, (onB + route.enterAt) / 2) ||
-      isProportional(onA, onB, (onA + route.leaveAt) / 2, (onB + backB) / 2)
-    ) {
-      return true;
-    }
+    const onA = leaveAt + times * (s - leaveAt);
+    const onB = enterAt + times * (t - enterAt);
+    const halfA = (onA + leaveAt) / 2;
+    const halfB = (onB + enterAt) / 2;
+    const parts =
+      isProportional(onA, onB, halfA, halfB) ||
+      isProportional(onA, onB, (onA + backA) / 2, halfB) ||
+      isProportional(onA, onB, halfA, (onB + backB) / 2);
+    if (parts) return true;
     const areApart = distanceBetween(onA, onB) > context.chip.joinWithinMm;
-    const step = Math.abs(s - route.leaveAt);
+    const step = Math.abs(s - leaveAt);
     if (areApart || step === 0 || (2 * times - 1) * step > farMm) return false;
   }
 
@@ -186,190 +167,113 @@ function shortest(routes: readonly Route[], s: number, t: number): Route | null 
   return best;
 }
 
-function toThinWall({ chip }: FindingContext, pieces: Pieces, group: readonly ThinStretch[]): ThinWall {
-  let thinnest = group[0];
-  let fromB = Number.POSITIVE_INFINITY;
-  let toB = Number.NEGATIVE_INFINITY;
-  let toA = Number.NEGATIVE_INFINITY;
-  for (const stretch of group) {
-    if (stretch.gapMm < thinnest.gapMm) thinnest = stretch;
-    fromB = Math.min(fromB, stretch.otherFrom, stretch.otherTo);
-    toB = Math.max(toB, stretch.otherFrom, stretch.otherTo);
-    toA = Math.max(toA, stretch.to);
-  }
+function toThinWall({ chip }: FindingContext, group: readonly ThinStretch[]): ThinWall {
+  const gapMm = group.reduce((least, stretch) => Math.min(least, stretch.gapMm), Number.POSITIVE_INFINITY);
+  let thinnest = group.find((stretch) => stretch.gapMm === gapMm) ?? group[0];
   // Equally thin for long: the middle of the longest such stretch is where to look.
-  const least = thinnest.gapMm + 1e-9;
   for (const stretch of group) {
-    if (stretch.gapMm <= least && stretch.to - stretch.from > thinnest.to - thinnest.from + 1e-6)
+    if (stretch.gapMm <= gapMm + 1e-9 && stretch.to - stretch.from > thinnest.to - thinnest.from + 1e-6)
       thinnest = stretch;
   }
-  const { i, j, gapMm, limitMm } = thinnest;
   return {
-    pieceA: i,
-    pieceB: j,
-    centrelineA: thinnest.a,
-    centrelineB: thinnest.b,
-    fromA: group[0].from,
-    toA,
-    fromB,
-    toB,
+    pieceA: thinnest.faced.i,
+    pieceB: thinnest.faced.j,
+    ...extentOf(group),
     lengthMm: coveredLength(group.map(({ thinFrom, thinTo }) => [thinFrom, thinTo])),
-    gapMm,
-    limitMm,
-    mark: markAt(chip.channels[pieces.channel[i]].linecap !== 'round'),
+    gapMm: thinnest.gapMm,
+    limitMm: thinnest.faced.limitMm,
+    mark: markAt(chip, thinnest),
   };
-
-  function markAt(mayBeFlat: boolean): Line {
-    const { thinnestAt } = thinnest;
-    const t = Math.min(1, Math.max(0, (thinnestAt - pieces.start[i]) / pieces.length[i]));
-    const px = pieces.x1[i] + t * (pieces.x2[i] - pieces.x1[i]);
-    const py = pieces.y1[i] + t * (pieces.y2[i] - pieces.y1[i]);
-    const c = closestPoints([px, py, px, py], lineOf(pieces, j));
-    if (c.distanceMm === 0) return [px, py, px, py];
-    if (mayBeFlat && c.distanceMm - pieces.half[i] - pieces.half[j] < gapMm - 1e-9) {
-      const exact = gapBetween(chip, pieces, i, j);
-      return [exact.x1, exact.y1, exact.x2, exact.y2];
-    }
-    const ux = (c.x2 - c.x1) / c.distanceMm;
-    const uy = (c.y2 - c.y1) / c.distanceMm;
-    return [
-      c.x1 + ux * pieces.half[i],
-      c.y1 + uy * pieces.half[i],
-      c.x2 - ux * pieces.half[j],
-      c.y2 - uy * pieces.half[j],
-    ];
-  }
 }
 
-/** Two straight pieces nearer than the limit: the part of the first that is thin and far enough along the channels. */
-function addThinStretches(
-  into: ThinStretch[],
-  context: FindingContext,
-  pieces: Pieces,
-  i: number,
-  j: number,
-  distanceMm: number,
-  limitMm: number,
-): void {
-  const { chip } = context;
-  const halves = pieces.half[i] + pieces.half[j];
-  // The relative slack of a limit, rounding of coordinates where the limit is nought, and what curves may lie beside their
-  // pieces: a wall round a bend drawn exactly at the limit is not below it.
-  const withinMm =
-    halves +
-    limitMm * (1 - LIMIT_SLACK) -
-    (limitMm === 0 ? -1e-9 * halves : 0) -
-    pieces.bulge[i] -
-    pieces.bulge[j];
-  const flat = hasFlatEnd(chip, pieces, i) || hasFlatEnd(chip, pieces, j);
-  if (!flat && distanceMm >= withinMm) return;
-  if (distanceMm <= chip.joinWithinMm && crossesSquarely(pieces, i, j)) return;
+/** From wall to wall at the thinnest place of a stretch. */
+function markAt(chip: Chip, { faced, gapMm, thinnestAt }: ThinStretch): Line {
+  const { pieces, i, j } = faced;
+  const { half } = pieces;
+  const t = Math.min(1, Math.max(0, (thinnestAt - pieces.start[i]) / pieces.length[i]));
+  const { x, y } = placeOn(pieces, i, t);
+  const { distanceMm, x1, y1, x2, y2 } = closestPoints(pointLine(x, y), lineOf(pieces, j));
+  if (distanceMm === 0) return pointLine(x, y);
+  const mayBeFlat = chip.channels[pieces.channel[i]].linecap !== 'round';
+  if (mayBeFlat && distanceMm - half[i] - half[j] < gapMm - 1e-9)
+    return lineBetween(gapBetween(chip, pieces, i, j));
+  const ux = (x2 - x1) / distanceMm;
+  const uy = (y2 - y1) / distanceMm;
+  return [x1 + ux * half[i], y1 + uy * half[i], x2 - ux * half[j], y2 - uy * half[j]];
+}
+
+/** The parts of the first piece that are thin and far enough along the channels. */
+function addThinStretches(into: ThinStretch[], context: FindingContext, faced: FacedWalls): void {
+  const { pieces, i, j, apartMm, nearestAt, slope } = faced;
   const a = pieces.centreline[i];
   const b = pieces.centreline[j];
-  const apartMm = 4 * (halves + limitMm);
-  if (a === b && pieces.start[j] + pieces.length[j] - pieces.start[i] <= apartMm) return;
-  const lineI = lineOf(pieces, i);
-  const lineJ = lineOf(pieces, j);
-  const closest = closestPoints(lineI, lineJ);
-  // Half a width round the centreline is the painted area but for the square ends: where these face, they are measured.
-  let exactMm = Number.NEGATIVE_INFINITY;
-  if (
-    flat &&
-    distanceMm > 0 &&
-    (isAtEnd(lineI, closest.x1, closest.y1) || isAtEnd(lineJ, closest.x2, closest.y2))
-  ) {
-    exactMm = gapBetween(chip, pieces, i, j).distanceMm;
-    if (exactMm >= withinMm - halves) return;
-  } else if (distanceMm >= withinMm) return;
   const paths = channelPaths(context);
-  const nearestAt = pieces.start[i] + Math.hypot(closest.x1 - pieces.x1[i], closest.y1 - pieces.y1[i]);
-  const thin = stretchWithin(lineI, lineJ, withinMm);
-  const thinFrom = thin === null ? nearestAt : pieces.start[i] + thin[0];
-  const thinTo = thin === null ? nearestAt : pieces.start[i] + thin[1];
-
-  const ux = (pieces.x2[i] - pieces.x1[i]) / pieces.length[i];
-  const uy = (pieces.y2[i] - pieces.y1[i]) / pieces.length[i];
-  const vx = (pieces.x2[j] - pieces.x1[j]) / pieces.length[j];
-  const vy = (pieces.y2[j] - pieces.y1[j]) / pieces.length[j];
-  const slope = ux * vx + uy * vy;
-  const offset = (pieces.x1[i] - pieces.x1[j]) * vx + (pieces.y1[i] - pieces.y1[j]) * vy;
-  const facing = (s: number): number =>
-    pieces.start[j] + Math.min(pieces.length[j], Math.max(0, offset + slope * (s - pieces.start[i])));
-  const gapAt = (s: number): number => {
-    const t = s - pieces.start[i];
-    const x = pieces.x1[i] + ux * t;
-    const y = pieces.y1[i] + uy * t;
-    return Math.max(
-      distanceToSegment(x, y, pieces.x1[j], pieces.y1[j], pieces.x2[j], pieces.y2[j]) - halves,
-      exactMm,
-    );
-  };
-
   const faces = facingTest(context, pieces, i, j);
-  // Between these positions the way from s to the place that it faces is the least of a few linear functions of s.
-  const cuts = [thinFrom, thinTo];
-  paths.addBounds(cuts, a, thinFrom, thinTo);
-  if (Math.abs(slope) > 1e-9) {
-    const toS = (t: number): number => pieces.start[i] + (t - pieces.start[j] - offset) / slope;
-    const bounds = [pieces.start[j], pieces.start[j] + pieces.length[j]];
-    const [low, high] = [facing(thinFrom), facing(thinTo)];
-    paths.addBounds(bounds, b, Math.min(low, high), Math.max(low, high));
-    for (const t of bounds) {
-      const s = toS(t);
-      if (s > thinFrom && s < thinTo) cuts.push(s);
-    }
-  }
-  for (const s of faces.cuts) if (s > thinFrom && s < thinTo) cuts.push(s);
-  cuts.sort((p, q) => p - q);
+  const cuts = cutsOf(context, faced, faces.cuts);
   for (let k = 0; k + 1 < cuts.length; k++) {
     const low = cuts[k];
     const high = cuts[k + 1];
     if (high - low <= 1e-9 && cuts.length > 2) continue;
     const middle = (low + high) / 2;
-    if (!faces.at(middle) || paths.isInWell(a, middle) || paths.isInWell(b, facing(middle))) continue;
+    const across = facing(faced, middle);
+    if (!faces.at(middle) || paths.isInWell(a, middle) || paths.isInWell(b, across)) continue;
     const arcA = paths.arcAt(a, middle);
-    const arcB = paths.arcAt(b, facing(middle));
+    const arcB = paths.arcAt(b, across);
     if (arcA < 0 || arcB < 0) continue;
     const routes = paths.routes(arcA, arcB, apartMm);
-    const far = farStretch(routes, low, high, facing, apartMm);
+    const far = farStretch(routes, faced, low, high);
     if (far === null) continue;
     const [from, to] = far;
+    const [otherFrom, otherTo] = [facing(faced, from), facing(faced, to)];
     const thinnestAt = evenlyThin(slope) ? (from + to) / 2 : Math.min(to, Math.max(from, nearestAt));
     into.push({
       a,
       b,
-      i,
-      j,
+      faced,
       from,
       to,
-      otherFrom: facing(from),
-      otherTo: facing(to),
+      otherFrom,
+      otherTo,
       thinFrom: Math.min(from, low),
       thinTo: Math.max(to, high),
-      apartMm,
-      limitMm,
-      wayFrom: wayOf(routes, from, facing(from)),
-      wayTo: wayOf(routes, to, facing(to)),
-      gapFrom: gapAt(from),
-      gapTo: gapAt(to),
-      gapMm: gapAt(thinnestAt),
+      wayFrom: wayOf(routes, from, otherFrom),
+      wayTo: wayOf(routes, to, otherTo),
+      gapFrom: gapAt(faced, from),
+      gapTo: gapAt(faced, to),
+      gapMm: gapAt(faced, thinnestAt),
       thinnestAt,
     });
   }
 }
 
+/** Positions on i between which the way from one to the place that it faces is the least of a few linear functions. */
+function cutsOf(context: FindingContext, faced: FacedWalls, faceCuts: readonly number[]): number[] {
+  const { pieces, i, j, thinFrom, thinTo, slope, offset } = faced;
+  const paths = channelPaths(context);
+  const cuts = [...faceCuts];
+  if (Math.abs(slope) > 1e-9) {
+    const bounds = [pieces.start[j], pieces.start[j] + pieces.length[j]];
+    const [low, high] = [facing(faced, thinFrom), facing(faced, thinTo)];
+    paths.addBounds(bounds, pieces.centreline[j], Math.min(low, high), Math.max(low, high));
+    for (const t of bounds) cuts.push(pieces.start[i] + (t - pieces.start[j] - offset) / slope);
+  }
+  const inside = [thinFrom, thinTo, ...cuts.filter((s) => s > thinFrom && s < thinTo)];
+  paths.addBounds(inside, pieces.centreline[i], thinFrom, thinTo);
+  return inside.sort((p, q) => p - q);
+}
+
 /** Where on [low, high] every route is longer than apartMm: each is linear there, so it is one stretch. */
 function farStretch(
   routes: readonly Route[],
+  faced: FacedWalls,
   low: number,
   high: number,
-  facing: (s: number) => number,
-  apartMm: number,
 ): readonly [number, number] | null {
   let from = low;
   let to = high;
-  const otherLow = facing(low);
-  const otherHigh = facing(high);
+  const { apartMm } = faced;
+  const otherLow = facing(faced, low);
+  const otherHigh = facing(faced, high);
   for (const route of routes) {
     const atLow = routeLength(route, low, otherLow) - apartMm;
     const atHigh = routeLength(route, high, otherHigh) - apartMm;
@@ -383,72 +287,11 @@ function farStretch(
 }
 
 function wayOf(routes: readonly Route[], s: number, t: number): number {
-  let least = Number.POSITIVE_INFINITY;
-  for (const route of routes) least = Math.min(least, routeLength(route, s, t));
-  return least;
+  const route = shortest(routes, s, t);
+  return route === null ? Number.POSITIVE_INFINITY : routeLength(route, s, t);
 }
-
-/** sin α for tan(α/2) = 1/4: 2t/(1 + t²). */
-const SQUARE_SINE = 0.5 / (1 + 1 / 16);
 
 /** Cosine so near 1 that over a metre the two pieces move apart by less than a micrometre. */
 function evenlyThin(cosine: number): boolean {
   return 1 - Math.abs(cosine) < 1e-12;
-}
-
-function isAtEnd([ax, ay, bx, by]: Line, x: number, y: number): boolean {
-  return (x === ax && y === ay) || (x === bx && y === by);
-}
-
-/**
- * Straight pieces that meet at an angle α are thin up to R/sin α from there, R being both halves and the limit, and there
- * the way along the channels is R cot(α/2): never over the 4 R that make a wall when tan(α/2) is 1/4 or more.
- */
-function crossesSquarely(pieces: Pieces, i: number, j: number): boolean {
-  const cross =
-    (pieces.x2[i] - pieces.x1[i]) * (pieces.y2[j] - pieces.y1[j]) -
-    (pieces.y2[i] - pieces.y1[i]) * (pieces.x2[j] - pieces.x1[j]);
-  return Math.abs(cross) >= SQUARE_SINE * pieces.length[i] * pieces.length[j];
-}
-
-/**
- * Whether a place s on piece i faces piece j: no nearer place lies next to it on one of j's neighbours, and it does not look
- * along its own strip at a square end that stands in it. The answer changes only at `cuts`.
- */
-function facingTest(
-  { chip }: FindingContext,
-  pieces: Pieces,
-  i: number,
-  j: number,
-): { readonly cuts: readonly number[]; readonly at: (s: number) => boolean } {
-  const ux = (pieces.x2[i] - pieces.x1[i]) / pieces.length[i];
-  const uy = (pieces.y2[i] - pieces.y1[i]) / pieces.length[i];
-  const vx = (pieces.x2[j] - pieces.x1[j]) / pieces.length[j];
-  const vy = (pieces.y2[j] - pieces.y1[j]) / pieces.length[j];
-  const cuts: number[] = [];
-  const start = sideOf(pieces.x1[j], pieces.y1[j], -vx, -vy, neighbourPiece(pieces, j, -1));
-  const end = sideOf(pieces.x2[j], pieces.y2[j], vx, vy, neighbourPiece(pieces, j, 1));
-  return { cuts, at: (s) => start(s) && end(s) };
-
-  /** One end of j: out of it points (ox, oy), and its neighbour there goes on in its own direction. */
-  function sideOf(x: number, y: number, ox: number, oy: number, next: number): (s: number) => boolean {
-    const beyond = alongLine(x, y, ox, oy);
-    if (next < 0) {
-      const isInside = isInPieceStrip(pieces, i, x, y, chip.joinWithinMm, null);
-      return (s) => !isInside || beyond(s) <= 0;
-    }
-    const sign = Math.hypot(pieces.x1[next] - x, pieces.y1[next] - y) < 1e-12 ? 1 : -1;
-    const nx = (sign * (pieces.x2[next] - pieces.x1[next])) / pieces.length[next];
-    const ny = (sign * (pieces.y2[next] - pieces.y1[next])) / pieces.length[next];
-    const onNext = alongLine(x, y, nx, ny);
-    return (s) => beyond(s) <= 0 || onNext(s) <= 0;
-  }
-
-  /** How far beyond (x, y) in a direction the place s lies; its change of sign is a cut. */
-  function alongLine(x: number, y: number, dx: number, dy: number): (s: number) => number {
-    const atStart = (pieces.x1[i] - x) * dx + (pieces.y1[i] - y) * dy;
-    const slope = ux * dx + uy * dy;
-    if (Math.abs(slope) > 1e-12) cuts.push(pieces.start[i] - atStart / slope);
-    return (s) => atStart + slope * (s - pieces.start[i]);
-  }
 }

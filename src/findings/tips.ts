@@ -1,5 +1,7 @@
+import { grouped } from '../by-key.ts';
+import { endPiece } from '../geometry/pieces.ts';
 import type { Network } from '../network/types.ts';
-import { type FindingContext, oncePerContext } from './context.ts';
+import { oncePerContext } from './context.ts';
 
 /**
  * A place where a part ends dead: one channel end that meets nothing, or a bundle of ends that meet only each other.
@@ -26,17 +28,12 @@ const COS_ONE_SIDE = Math.cos(Math.PI / 8);
 const LEAST_MEAN = 0.2;
 
 /** All tips of the drawing, in the order of their first ends. Cost: linear in the ends. */
-export const tipsOf: (context: FindingContext) => readonly Tip[] = oncePerContext(({ network }) => {
-  const tips: Tip[] = [];
-  for (const ends of endGroups(network)) {
-    const tip = toTip(network, ends);
-    if (tip !== null) tips.push(tip);
-  }
-  return tips;
-});
+export const tipsOf = oncePerContext(({ network }): readonly Tip[] =>
+  endGroups(network).flatMap((ends) => toTip(network, ends) ?? []),
+);
 
 /** Tip of each end, −1 for an end at none. */
-export const tipOfEnd: (context: FindingContext) => Int32Array = oncePerContext((context) => {
+export const tipOfEnd = oncePerContext((context): Int32Array => {
   const of = new Int32Array(context.network.trace.endFate.length).fill(-1);
   tipsOf(context).forEach(({ ends }, tip) => {
     for (const end of ends) of[end] = tip;
@@ -47,25 +44,16 @@ export const tipOfEnd: (context: FindingContext) => Int32Array = oncePerContext(
 /** Ends that meet nothing, and bundles whose members were carried on to nothing. */
 function endGroups({ trace }: Network): number[][] {
   const { endFate, endBundle, endJoinedTo } = trace;
-  const groups: number[][] = [];
-  const byBundle = new Map<number, number[]>();
   const meets = new Set<number>();
+  const ends: number[] = [];
   endFate.forEach((fate, end) => {
     const bundle = endBundle[end];
-    if (bundle < 0) {
-      if (fate === 'open') groups.push([end]);
-      return;
-    }
-    if (endJoinedTo[end] >= 0 || fate === 'port') meets.add(bundle);
-    const known = byBundle.get(bundle);
-    if (known !== undefined) known.push(end);
-    else {
-      const members = [end];
-      byBundle.set(bundle, members);
-      groups.push(members);
-    }
+    if (bundle >= 0 && (endJoinedTo[end] >= 0 || fate === 'port')) meets.add(bundle);
+    if (bundle >= 0 || fate === 'open') ends.push(end);
   });
-  return groups.filter(([first]) => !meets.has(endBundle[first]));
+  // An end that is in no bundle is a group by itself.
+  const groups = grouped(ends, (end) => (endBundle[end] < 0 ? ~end : endBundle[end]));
+  return [...groups].filter(([bundle]) => !meets.has(bundle)).map(([, members]) => members);
 }
 
 function toTip(network: Network, members: readonly number[]): Tip | null {
@@ -73,12 +61,8 @@ function toTip(network: Network, members: readonly number[]): Tip | null {
   const ends = members.filter((end) => !isLeftOut(network, end));
   if (ends.length === 0) return null;
   const places = ends.map((end) => ({ end, ...endPlace(network, end) }));
-  let sumX = 0;
-  let sumY = 0;
-  for (const { outX, outY } of places) {
-    sumX += outX;
-    sumY += outY;
-  }
+  const sumX = places.reduce((sum, place) => sum + place.outX, 0);
+  const sumY = places.reduce((sum, place) => sum + place.outY, 0);
   const length = Math.hypot(sumX, sumY);
   if (length < LEAST_MEAN * ends.length) return null;
   const outX = sumX / length;
@@ -106,15 +90,14 @@ function isLeftOut({ trace: { endFate, firstArc } }: Network, end: number): bool
 /** Place of an end and unit direction out of its channel. */
 export function endPlace({ trace }: Network, end: number) {
   const { pieces } = trace.near;
-  const c = end >> 1;
   const atStart = (end & 1) === 0;
-  const piece = atStart ? pieces.firstPiece[c] : pieces.firstPiece[c + 1] - 1;
+  const piece = endPiece(pieces, end);
   return {
     piece,
     x: atStart ? pieces.x1[piece] : pieces.x2[piece],
     y: atStart ? pieces.y1[piece] : pieces.y2[piece],
     outX: pieces.outX[end],
     outY: pieces.outY[end],
-    s: atStart ? 0 : pieces.centrelineLength[c],
+    s: atStart ? 0 : pieces.centrelineLength[end >> 1],
   };
 }

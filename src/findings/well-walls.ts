@@ -1,13 +1,14 @@
 import { LIMIT_SLACK } from '../chip/limits.ts';
 import { FINE_MM } from '../geometry/curve.ts';
-import { type Closest, type Line, stretchWithin } from './closest.ts';
+import { type Closest, type Line, lineBetween, nearer, pointLine, stretchWithin } from './closest.ts';
 import type { FindingContext } from './context.ts';
+import { hasPlaceOn } from './meets.ts';
 import { nearMisses } from './misses.ts';
 import { gapToHole, lineOf } from './painted.ts';
-import { channelPaths } from './paths.ts';
+import { isNearPort } from './paths.ts';
 
 /** Too little material between a channel and a well that it does not meet there. */
-export interface WellWall {
+interface WellWall {
   readonly channel: number;
   readonly port: number;
   readonly gapMm: number;
@@ -23,83 +24,75 @@ export function findWellWalls(
   context: FindingContext,
   limitOf: (channel: number) => number | null,
 ): WellWall[] {
-  const { chip, network } = context;
-  const { near } = network.trace;
-  const { pieces, index } = near;
-  const walls: WellWall[] = [];
-  if (index === null || chip.ports.length === 0) return walls;
+  const { chip } = context;
   const limits = chip.channels.map((_, channel) => limitOf(channel) ?? 0);
   const widest = limits.reduce((most, limit) => Math.max(most, limit), 0);
-  if (widest === 0) return walls;
+  if (widest === 0) return [];
   const missed = new Set(
-    nearMisses(context)
-      .filter(({ port }) => port >= 0)
-      .flatMap(({ tip, port }) => tip.ends.map((end) => `${end >> 1} ${port}`)),
+    nearMisses(context).flatMap(({ tip, port }) => tip.ends.map((end) => `${end >> 1} ${port}`)),
   );
-  chip.ports.forEach((port, p) => {
-    const r = port.radiusMm + widest;
-    const close: { piece: number; gap: Closest; from: number; to: number }[] = [];
-    for (const i of index.search(port.xMm - r, port.yMm - r, port.xMm + r, port.yMm + r)) {
-      // A curve may lie beside its pieces: round a well exactly at the limit it is not below it.
-      const limit = limits[pieces.channel[i]] * (1 - LIMIT_SLACK) - Math.min(pieces.bulge[i], FINE_MM);
-      const gap = gapToHole(chip, pieces, i, port);
-      if (gap.distanceMm >= limit) continue;
-      const within = stretchWithin(
-        lineOf(pieces, i),
-        [port.xMm, port.yMm, port.xMm, port.yMm],
-        port.radiusMm + pieces.half[i] + limit + pieces.bulge[i],
-      ) ?? [0, 0];
-      close.push({
-        piece: i,
-        gap,
-        from: pieces.start[i] + within[0],
-        to: pieces.start[i] + within[1],
-      });
-    }
-    close.sort((one, two) => one.piece - two.piece);
-    for (let k = 0; k < close.length; ) {
-      const c = pieces.centreline[close[k].piece];
-      const channel = pieces.channel[close[k].piece];
-      const limitMm = limits[channel];
-      const apartMm = 4 * (2 * pieces.half[close[k].piece] + limitMm);
-      let thinnest = close[k].gap;
-      let { from, to } = close[k];
-      let next = k + 1;
-      for (; next < close.length && pieces.centreline[close[next].piece] === c; next++) {
-        if (close[next].from > to + apartMm / 2) break;
-        if (close[next].gap.distanceMm < thinnest.distanceMm) thinnest = close[next].gap;
-        from = Math.min(from, close[next].from);
-        to = Math.max(to, close[next].to);
-      }
-      k = next;
-      if (meetsThere(c, p, from, to) || isNearAlong(c, p, from, to, apartMm)) continue;
-      if (missed.has(`${c} ${p}`)) continue;
-      const { distanceMm, x1, y1, x2, y2 } = thinnest;
-      walls.push({ channel, port: p, gapMm: distanceMm, limitMm, mark: [x1, y1, x2, y2] });
-    }
-  });
-  return walls;
+  return chip.ports.flatMap((_, port) =>
+    stretchesNear(context, port, limits, widest)
+      .filter((stretch) => !isMeant(context, port, stretch) && !missed.has(`${stretch.centreline} ${port}`))
+      .map(({ channel, limitMm, gap }) => {
+        return { channel, port, gapMm: gap.distanceMm, limitMm, mark: lineBetween(gap) };
+      }),
+  );
+}
 
-  /** Whether the centreline comes to the port's node within the stretch. */
-  function meetsThere(c: number, p: number, from: number, to: number): boolean {
-    const { firstPlace, placeCentreline, placeFrom, placeTo } = network.trace;
-    const node = network.portNode[p];
-    for (let k = firstPlace[node]; k < firstPlace[node + 1]; k++) {
-      if (placeCentreline[k] === c && placeFrom[k] <= to && placeTo[k] >= from) return true;
-    }
-    return false;
-  }
+/** A stretch of a centreline that is nearer to a well than its limit, and where it is nearest. */
+interface Stretch {
+  readonly centreline: number;
+  readonly channel: number;
+  readonly limitMm: number;
+  /** What leads to the well by a shorter way is meant to be near, mm. */
+  readonly apartMm: number;
+  gap: Closest;
+  from: number;
+  to: number;
+}
 
-  /** Whether all of the stretch is near the well along the channels too. */
-  function isNearAlong(c: number, p: number, from: number, to: number, apartMm: number): boolean {
-    const paths = channelPaths(context);
-    const { arcFrom, arcTo } = network.trace;
-    return [from, (from + to) / 2, to].every((s) => {
-      const arc = paths.arcAt(c, s);
-      if (arc < 0) return true;
-      const start = paths.between(network.portNode[p], paths.sideVertex[2 * arc], apartMm);
-      const end = paths.between(network.portNode[p], paths.sideVertex[2 * arc + 1], apartMm);
-      return Math.min(start + Math.abs(s - arcFrom[arc]), end + Math.abs(s - arcTo[arc])) <= apartMm;
-    });
+/** Pieces that follow each other on a centreline are one stretch. */
+function stretchesNear(
+  { chip, network }: FindingContext,
+  p: number,
+  limits: readonly number[],
+  widest: number,
+): Stretch[] {
+  const { pieces, index } = network.trace.near;
+  const port = chip.ports[p];
+  const { xMm, yMm, radiusMm } = port;
+  const r = radiusMm + widest;
+  const stretches: Stretch[] = [];
+  for (const i of index.search(xMm - r, yMm - r, xMm + r, yMm + r).sort((one, two) => one - two)) {
+    const channel = pieces.channel[i];
+    const limitMm = limits[channel];
+    // A curve may lie beside its pieces: round a well exactly at the limit it is not below it.
+    const limit = limitMm * (1 - LIMIT_SLACK) - Math.min(pieces.bulge[i], FINE_MM);
+    const gap = gapToHole(chip, pieces, i, port);
+    if (gap.distanceMm >= limit) continue;
+    const within = radiusMm + pieces.half[i] + limit + pieces.bulge[i];
+    const [low, high] = stretchWithin(lineOf(pieces, i), pointLine(xMm, yMm), within) ?? [0, 0];
+    const [from, to] = [pieces.start[i] + low, pieces.start[i] + high];
+    const centreline = pieces.centreline[i];
+    const last = stretches.at(-1);
+    if (last !== undefined && last.centreline === centreline && from <= last.to + last.apartMm / 2) {
+      last.gap = nearer(last.gap, gap);
+      last.from = Math.min(last.from, from);
+      last.to = Math.max(last.to, to);
+    } else {
+      const apartMm = 4 * (2 * pieces.half[i] + limitMm);
+      stretches.push({ centreline, channel, limitMm, apartMm, gap, from, to });
+    }
   }
+  return stretches;
+}
+
+/** Whether the centreline comes to the well within the stretch, or all of that is near the well along the channels too. */
+function isMeant(context: FindingContext, port: number, { centreline, from, to, apartMm }: Stretch): boolean {
+  const { network } = context;
+  return (
+    hasPlaceOn(network, network.portNode[port], centreline, from, to) ||
+    [from, (from + to) / 2, to].every((s) => isNearPort(context, { c: centreline, s }, port, apartMm))
+  );
 }

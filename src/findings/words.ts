@@ -3,14 +3,17 @@ import { formatMm, formatNumber, type Show, showOf } from '../runsheet/shown.ts'
 import { type FindingContext, oncePerContext } from './context.ts';
 
 /** Numbers for messages, in the units that the run sheet's `show` asks for. */
-export const showFor: (context: FindingContext) => Show = oncePerContext(({ run }) =>
-  showOf(run.sheet?.show ?? null),
-);
+export const showFor = oncePerContext(({ run }): Show => showOf(run.sheet?.show ?? null));
 
 /** A distance across the drawing (mm) as people say it: "35 µm", "1.2 mm". */
 export function distanceText(mm: number): string {
   if (Math.abs(mm) >= 1) return `${formatNumber(mm)} mm`;
   return `${formatNumber(mm * 1e3)} µm`;
+}
+
+/** "35°" */
+export function degreesText(rad: number): string {
+  return `${formatNumber((rad * 180) / Math.PI)}°`;
 }
 
 /** A move in the drawing (mm), rounded up to 1 µm so that doing it is enough: "0.031 mm". */

@@ -13,8 +13,8 @@ const TOUCH_MM = 0.001;
 /** The one spatial index over all pieces, and the one list of pairs of pieces that come near each other. */
 export interface Nearness {
   readonly pieces: Pieces;
-  /** Boxes of the painted pieces (strip, cap and bulge), in piece order. Null when there is no piece. */
-  readonly index: BoxIndex | null;
+  /** Boxes of the painted pieces (strip, cap and bulge), in piece order. */
+  readonly index: BoxIndex;
   /** Pairs are listed when their strips come nearer than this. */
   readonly withinMm: number;
   readonly pairCount: number;
@@ -91,7 +91,7 @@ export function findNearPairs(
   const { first: firstPair, item: side } = sidesByNode(n, columns.pairA, columns.pairB);
   return {
     pieces,
-    index: n === 0 ? null : index,
+    index,
     withinMm,
     pairCount: pairA.length,
     ...columns,
@@ -117,10 +117,15 @@ export function pieceBoxes(
   return box;
 }
 
-/** The pieces that come near a piece, in the order of their pairs. */
-export function piecesNear({ pairA, pairB, firstPair, pairOf }: Nearness, piece: number): number[] {
+/** The pieces that come near a piece, in the order of their pairs; no more than `most`. */
+export function piecesNear(
+  { pairA, pairB, firstPair, pairOf }: Nearness,
+  piece: number,
+  most = Infinity,
+): number[] {
   const found: number[] = [];
-  for (let k = firstPair[piece]; k < firstPair[piece + 1]; k++) {
+  const end = Math.min(firstPair[piece + 1], firstPair[piece] + most);
+  for (let k = firstPair[piece]; k < end; k++) {
     const pair = pairOf[k];
     found.push(pairA[pair] === piece ? pairB[pair] : pairA[pair]);
   }

@@ -181,6 +181,11 @@ export function neighbourPiece(pieces: Pieces, piece: number, step: 1 | -1): num
   return piece + step < first || piece + step >= first + count ? -1 : piece + step;
 }
 
+/** Unit vector along a piece. */
+export function directionOf({ x1, y1, x2, y2, length }: Pieces, i: number): readonly [number, number] {
+  return [(x2[i] - x1[i]) / length[i], (y2[i] - y1[i]) / length[i]];
+}
+
 /** Whether two pieces next to each other are cut from one curve, or from two that are tangent. */
 export function goesOnSmoothly(pieces: Pieces, one: number, two: number): boolean {
   if (pieces.bendRadius[one] === 0 || pieces.bendRadius[two] === 0) return false;

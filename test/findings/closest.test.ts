@@ -1,6 +1,6 @@
 import * as fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { closestPoints, type Line, stretchWithin } from '../../src/findings/closest.ts';
+import { boxRound, closestPoints, type Line, linesAlong, stretchWithin } from '../../src/findings/closest.ts';
 
 const coordinate = fc.integer({ min: -40, max: 40 }).map((n) => n / 8);
 const line: fc.Arbitrary<Line> = fc
@@ -59,5 +59,19 @@ describe('nearest places of two straight lines', () => {
       }),
       { numRuns: 300, seed: 5 },
     );
+  });
+});
+
+describe('lines along points', () => {
+  it('go from each point to the next, and none from a single one', () => {
+    expect(linesAlong(Float64Array.of(0, 1, 2, 3, 4, 0))).toEqual([
+      [0, 1, 2, 3],
+      [2, 3, 4, 0],
+    ]);
+    expect(linesAlong(Float64Array.of(0, 1))).toEqual([]);
+  });
+
+  it('lie in an upright box, whichever way they run', () => {
+    expect(boxRound([4, 1, 2, 3], 0.5)).toEqual([1.5, 0.5, 4.5, 3.5]);
   });
 });

@@ -1,6 +1,12 @@
 import { describe, expect, it } from 'vitest';
 import { onlyGrows } from '../../src/findings/growth.ts';
-import { coveredLength, type Facing, groupStretches } from '../../src/findings/stretches.ts';
+import {
+  coveredLength,
+  extentOf,
+  type Facing,
+  groupStretches,
+  rangeOf,
+} from '../../src/findings/stretches.ts';
 
 const facing = (from: number, to: number, otherFrom: number, otherTo: number, a = 0, b = 1): Facing => ({
   a,
@@ -30,6 +36,12 @@ describe('stretches that face each other', () => {
 
   it('keep two pairs of centrelines apart', () => {
     expect(groupStretches([facing(0, 2, 0, 2, 0, 1), facing(0, 2, 0, 2, 0, 2)], () => 1)).toHaveLength(2);
+  });
+
+  it('reach as far on both centrelines as any of a group, whichever way the second runs', () => {
+    const group = [facing(0, 5, 4, 9, 3, 7), facing(1, 3, 2, 8, 3, 7), facing(2, 3, 7, 6, 3, 7)];
+    expect(extentOf(group)).toEqual({ centrelineA: 3, centrelineB: 7, fromA: 0, toA: 5, fromB: 2, toB: 9 });
+    expect(rangeOf([])).toEqual([Number.POSITIVE_INFINITY, Number.NEGATIVE_INFINITY]);
   });
 
   it('count length that several cover once', () => {

@@ -79,8 +79,18 @@ describe('the list of near pairs', () => {
     expect(nearPairs([touching], 0.1).pairs).toEqual(['0-2']);
   });
 
-  it('of a drawing without channels is empty', () => {
+  it('of a drawing without channels is empty, and its index finds nothing', () => {
     const { near, pairs } = nearPairs([], 1);
-    expect([pairs, near.index, near.pairCount]).toEqual([[], null, 0]);
+    const found = [near.index.search(-9, -9, 9, 9), near.index.neighbors(0, 0)];
+    expect([pairs, near.pairCount, ...found]).toEqual([[], 0, [], []]);
+  });
+});
+
+describe('the neighbours of a piece', () => {
+  it('are the other pieces of its pairs, whichever comes first, and no more than asked for', () => {
+    const { near } = nearPairs([line('a', 0, 0, 9, 0), line('b', 3, -3, 3, 3), line('c', 6, -3, 6, 3)], 0.1);
+    expect(piecesNear(near, 0)).toEqual([1, 2]);
+    expect(piecesNear(near, 2)).toEqual([0]);
+    expect(piecesNear(near, 0, 1)).toEqual([1]);
   });
 });

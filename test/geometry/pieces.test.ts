@@ -1,5 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import {
+  directionOf,
+  endPiece,
   endsAtVertex,
   goesOnSmoothly,
   neighbourPiece,
@@ -80,5 +82,20 @@ describe('going on smoothly', () => {
     expect(goesOnSmoothly(chords(Math.PI), 0, 1)).toBe(false);
     expect(goesOnSmoothly(chords(0.1, [0, 1]), 0, 1)).toBe(false);
     expect(goesOnSmoothly(chords(0.1, [1, 0]), 0, 1)).toBe(false);
+  });
+});
+
+describe('the ends of centrelines', () => {
+  it('are the first and the last piece of each', () => {
+    expect([0, 1, 2, 3, 4, 5].map((end) => endPiece(pieces, end))).toEqual([0, 1, 2, 2, 3, 5]);
+  });
+});
+
+describe('the direction of a piece', () => {
+  it('is a unit vector as drawn', () => {
+    expect(directionOf(pieces, 1)).toEqual([0, 1]);
+    const [ux, uy] = directionOf(pieces, 5);
+    expect(ux).toBeCloseTo(-0.6, 12);
+    expect(uy).toBeCloseTo(-0.8, 12);
   });
 });

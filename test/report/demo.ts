@@ -1,12 +1,20 @@
 import { readFileSync } from 'node:fs';
-import { checkLayout } from '../../src/check-layout.ts';
-import type { Report } from '../../src/report/report.ts';
+import { analyse } from '../../src/analyse.ts';
+import { layOut } from '../../src/layout/layout.ts';
+import { buildReport, type Report } from '../../src/report/report.ts';
+import { parseRunSheet } from '../../src/runsheet/parse.ts';
+import { readSvg } from '../../src/svg/read.ts';
 
-/** A report of a layout given as text, through all stages. */
-export async function reportOf(name: string, svg: string, sheet: string | null): Promise<Report> {
-  return checkLayout({
-    layout: { name: `${name}.svg`, text: svg },
-    runSheet: sheet === null ? null : { name: `${name}.run.yaml`, text: sheet },
+/** A report of a layout given as text, through all stages; of the run sheet itself, whatever its cases. */
+export async function reportOf(name: string, svg: string, text: string | null): Promise<Report> {
+  const file = `${name}.svg`;
+  const sheet = text === null ? null : parseRunSheet(text, `${name}.run.yaml`);
+  const analysis = await analyse({ layout: layOut(readSvg(svg, file), file), sheet, file });
+  return buildReport({
+    tool: { name: 'rillcheck', version: '0.1.0' },
+    layout: { file, sha256: 'a'.repeat(64) },
+    sheet: sheet === null ? null : { ...sheet, sha256: 'b'.repeat(64) },
+    cases: [{ name: null, ...analysis }],
   });
 }
 

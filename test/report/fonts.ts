@@ -1,5 +1,5 @@
 import { readFileSync } from 'node:fs';
-import type { Fonts } from '../../src/report/pdf/paper.ts';
+import type { Fonts } from '../../src/report/pdf/options.ts';
 
 const folder = new URL('../../node_modules/dejavu-fonts-ttf/ttf/', import.meta.url);
 

@@ -11,20 +11,13 @@ import { writeHandCheck } from './hand-check.ts';
 import { writeHoles } from './holes.ts';
 import { writeMaps } from './maps.ts';
 import { writeModel } from './model.ts';
-import { type Fonts, Paper, type PaperSize } from './paper.ts';
+import type { PdfOptions } from './options.ts';
+import { Paper } from './paper.ts';
 import { writePump } from './pump.ts';
 import { writeReaches } from './reaches.ts';
 import { writeRunSheet } from './run-sheet.ts';
 import { writeSegments } from './segments.ts';
 import { writeSpread } from './spread.ts';
-
-export interface PdfOptions {
-  /** The embedded font's files (TrueType), with every glyph that the pages use. */
-  readonly fonts: Fonts;
-  readonly paper: PaperSize;
-  /** The one clock: printed, and the document's creation date. */
-  readonly date: Date;
-}
 
 /**
  * The document to sign: PDF 1.7, tagged, one embedded font. The same report, options and Node version give the same bytes.

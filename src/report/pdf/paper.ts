@@ -1,15 +1,10 @@
 import PDFDocument from 'pdfkit';
 import { cleanText, wrapMeasured } from '../plain-text.ts';
 import { type EmbeddedFont, embeddedFont } from './embedded-font.ts';
+import type { Fonts, PaperSize } from './options.ts';
 import { layOutPlainly } from './plain-layout.ts';
 import { visualChunks } from './visual-order.ts';
 
-export interface Fonts {
-  readonly regular: Uint8Array;
-  readonly bold: Uint8Array;
-}
-
-export type PaperSize = 'a4' | 'letter';
 export type Weight = 'regular' | 'bold';
 export type Element = PDFKit.PDFStructureElement;
 export type StructureType = 'H1' | 'H2' | 'H3' | 'P' | 'Figure' | 'TH' | 'TD' | 'Caption' | 'Lbl' | 'Code';

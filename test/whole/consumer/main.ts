@@ -83,7 +83,7 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
   const spread: Known<rillcheck.Spread> = await rillcheck.spreadOf(asRun, tolerances, draws, pace);
   const moved: readonly Known<rillcheck.SpreadOutput>[] = spread.outputs;
 
-  const computed: Known<rillcheck.CaseInput> = { name: 'seed', ...analysis };
+  const computed: Known<rillcheck.CaseInput> = { name: null, ...analysis };
   const reportInput: Known<rillcheck.ReportInput> = {
     tool: { name: 'rillcheck', version: rillcheck.VERSION },
     layout: { file: 'chip.svg', sha256: '0'.repeat(64) },
@@ -91,10 +91,10 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
     cases: [computed],
   };
   const inCases: Known<rillcheck.Report> = rillcheck.buildReport(reportInput);
-  const source: Known<rillcheck.SourceFile> = { name: 'chip.svg', text: LAYOUT };
+  const source: Known<rillcheck.SourceFile> = { name: 'chip.svg', text: svg };
   const files: Known<rillcheck.LayoutFiles> = {
     layout: source,
-    runSheet: { name: 'chip.run.yaml', text: SHEET },
+    runSheet: { name: 'chip.run.yaml', text: yaml },
   };
   const checked: Known<rillcheck.CheckLayoutOptions> = { pump: true, spread: draws };
   const report: Known<rillcheck.Report> = await rillcheck.checkLayout(files, checked);
@@ -145,7 +145,7 @@ export async function useAll(svg: string, yaml: string): Promise<string> {
   useEntries(sheet);
   const texts = [draft, json, reaches, segments, rillcheck.svgPicture(one, picture)];
   return [
-    rillcheck.terminalSummary(report, terminal).trim(),
+    rillcheck.terminalSummary(inCases, terminal).trim(),
     `${channels.length} channels, ${stages.length} stages, ${spread.draws} draws`,
     texts.every((text) => text.length > 100) && pdf.length > 10_000 ? 'all written' : 'something is missing',
   ].join('\n');
