@@ -8,6 +8,7 @@ import { didYouMean } from './runsheet/nearest.ts';
 import { parseRunSheet } from './runsheet/parse.ts';
 import { quote } from './runsheet/quote.ts';
 import type { RunSheet } from './runsheet/types.ts';
+import { TARGETS_EXAMPLE } from './solve/targets.ts';
 import { type Pace, type SpreadOptions, spreadOf, whyNoSpread } from './spread/spread.ts';
 import type { Spread } from './spread/types.ts';
 import { readSvg } from './svg/read.ts';
@@ -126,10 +127,6 @@ async function spreadPart(
   }
   return { spread: await spreadOf(analysis, tolerances, asked, asked.paceOf?.(name)) };
 }
-
-/** How targets are written, for messages. */
-export const TARGETS_EXAMPLE =
-  'write under targets for example "- { channel: lane-1, wall_shear: 0.3 Pa, by: feed }"';
 
 function refuseNoTargets(cases: readonly SheetCase[], file: string): void {
   if (cases.some(({ sheet }) => sheet !== null && sheet.targets.length > 0)) return;

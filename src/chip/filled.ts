@@ -219,9 +219,7 @@ function touchedShapes(
   for (const channel of channels) {
     for (const { points, closed } of channel.centrelines) {
       if (closed) continue;
-      const n = points.length;
-      touchAt(channel, points[0], points[1]);
-      touchAt(channel, points[n - 2], points[n - 1]);
+      for (const [x, y] of [points.subarray(0, 2), points.subarray(-2)]) touchAt(channel, x, y);
     }
   }
   for (const { name, xMm, yMm, radiusMm } of ports) {

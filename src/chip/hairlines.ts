@@ -92,11 +92,7 @@ function joinedLines(
       if (own.has(points)) continue;
       for (const line of linesMet(points, index))
         if (lines[line].channel.plane === channel.plane) joined.add(line);
-      const n = points.length;
-      for (const [x, y] of [
-        [points[0], points[1]],
-        [points[n - 2], points[n - 1]],
-      ] as const) {
+      for (const [x, y] of [points.subarray(0, 2), points.subarray(-2)]) {
         // Half the widest hairline; the strip of a narrower one is asked for by itself.
         for (const line of index.groupsWithin(x, y, DEFAULT_HAIRLINE_MM / 2 + slackMm)) {
           const { channel: other, points: ring } = lines[line];

@@ -79,13 +79,17 @@ export function word<const T extends string>(options: readonly T[], description:
   });
 }
 
-/** Any text that `read` makes something of; `read` throws QuantityError. */
+/**
+ * Any text that `read` makes something of; `read` throws QuantityError.
+ * @param metadata its description, which then has the one example; or all that the JSON Schema says of it
+ */
 export function scalar<T>(
   example: string,
-  metadata: Readonly<Record<string, unknown>>,
+  metadata: string | Readonly<Record<string, unknown>>,
   read: (text: string) => T,
 ): Field<T> {
-  return byShape({ text: v.pipe(v.string(), v.metadata({ ...metadata }), reading(read)) }, hint(example));
+  const all = typeof metadata === 'string' ? { description: metadata, examples: [example] } : { ...metadata };
+  return byShape({ text: v.pipe(v.string(), v.metadata(all), reading(read)) }, hint(example));
 }
 
 /** A key of a map that must be there, has a value for when it is missing, or a name of its own. */
@@ -291,7 +295,7 @@ function toleranceValue(
   share: 'with share' | 'absolute only',
   example: string,
 ): Field<Tolerance> {
-  return scalar(example, { description: TOLERANCE, examples: [example] }, (written): Tolerance => {
+  return scalar(example, TOLERANCE, (written): Tolerance => {
     const relative = /%\s*$/.test(written);
     if (relative && share === 'absolute only') {
       throw new QuantityError(

@@ -52,7 +52,7 @@ const ratio = (noun: string, example: string, description: string): Field<number
 
 /** Above 0 % and at most 100 %, as a fraction of 1. */
 const share = (example: string, description: string): Field<number> =>
-  scalar(example, { description, examples: [example] }, (written) => {
+  scalar(example, description, (written) => {
     const value = parseQuantity(written, 'share', '%');
     if (value > 0 && value <= 1) return value;
     throw new QuantityError(`${quote(written)} is not above 0 % and at most 100 %; ${hint(example)}`);
@@ -482,7 +482,7 @@ const limits = keys(
     ),
     min_corner_angle: called(
       'minCornerAngleRad',
-      scalar('30 deg', { description: 'Sharpest inside angle.', examples: ['30 deg'] }, (written) => {
+      scalar('30 deg', 'Sharpest inside angle.', (written) => {
         const value = parseQuantity(written, 'angle');
         if (value > 0 && value < Math.PI) return value;
         throw new QuantityError(`${quote(written)} is not between 0 deg and 180 deg; ${hint('30 deg')}`);
@@ -532,14 +532,10 @@ const tolerances = changed(
 );
 
 const shownUnit = (kind: Quantity, example: string): Field<string> =>
-  scalar(
-    example,
-    { description: 'Unit on screen and paper; data files stay SI.', examples: [example] },
-    (written) => {
-      unitFactor(written, kind);
-      return written.trim();
-    },
-  );
+  scalar(example, 'Unit on screen and paper; data files stay SI.', (written) => {
+    unitFactor(written, kind);
+    return written.trim();
+  });
 
 const show = keys(
   {
@@ -570,18 +566,14 @@ const ruleName = scalar(
   },
 );
 
-const date = scalar(
-  '2026-05-04',
-  { description: 'When, year-month-day.', examples: ['2026-05-04'] },
-  (written) => {
-    const day = written.trim();
-    const match = /^(\d{4})-(\d{2})-(\d{2})$/.exec(day);
-    const time =
-      match === null ? Number.NaN : Date.UTC(Number(match[1]), Number(match[2]) - 1, Number(match[3]));
-    if (!Number.isNaN(time) && new Date(time).toISOString().startsWith(day)) return day;
-    throw new QuantityError(`${quote(written)} is not a date; ${hint('2026-05-04')}`);
-  },
-);
+const date = scalar('2026-05-04', 'When, year-month-day.', (written) => {
+  const day = written.trim();
+  const match = /^(\d{4})-(\d{2})-(\d{2})$/.exec(day);
+  const time =
+    match === null ? Number.NaN : Date.UTC(Number(match[1]), Number(match[2]) - 1, Number(match[3]));
+  if (!Number.isNaN(time) && new Date(time).toISOString().startsWith(day)) return day;
+  throw new QuantityError(`${quote(written)} is not a date; ${hint('2026-05-04')}`);
+});
 
 /** A pattern of stars alone would take on everything, also what nobody has looked at. */
 const checkedName = scalar(

@@ -79,10 +79,7 @@ export interface FoundSettings {
 export function findSettings(at: RunNetwork): FoundSettings {
   const { sheet } = at.run;
   if (sheet === null || sheet.targets.length === 0) {
-    throw new InputError(
-      sheet?.file ?? at.network.chip.file,
-      'there are no targets; write under targets for example "- { channel: lane-1, wall_shear: 0.3 Pa, by: feed }"',
-    );
+    throw new InputError(sheet?.file ?? at.network.chip.file, `there are no targets; ${TARGETS_EXAMPLE}`);
   }
   const wanted = readTargets(at);
   const system = prepareSystem(at, sheet, wanted);
@@ -97,6 +94,10 @@ export function findSettings(at: RunNetwork): FoundSettings {
     flow: solution.state,
   };
 }
+
+/** How targets are written, for messages. */
+export const TARGETS_EXAMPLE =
+  'write under targets for example "- { channel: lane-1, wall_shear: 0.3 Pa, by: feed }"';
 
 /** The linear system y = y0 + A s of the targets. */
 interface System extends RunNetwork {
