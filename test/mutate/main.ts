@@ -23,7 +23,6 @@ const MUTATED = [
   'src/spread/',
   'src/findings/',
   'src/report/result.ts',
-  'src/report/section-values.ts',
   'src/report/pump-part.ts',
   'src/report/spread-part.ts',
 ];
