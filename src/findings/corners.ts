@@ -251,11 +251,11 @@ function notches(context: FindingContext): Finding[] {
     const x = tip.x + outX * step;
     const y = tip.y + outY * step;
     const plane = pieces.plane[one.piece];
-    const over = trace.near.index?.search(x, y, x, y, (i) => {
+    const over = trace.near.index.search(x, y, x, y, (i) => {
       if (i === one.piece || i === two.piece || pieces.plane[i] !== plane) return false;
       return gapToHole(chip, pieces, i, { xMm: x, yMm: y, radiusMm: 0 }).distanceMm <= 0;
     });
-    return over !== undefined && over.length > 0;
+    return over.length > 0;
   }
 }
 

@@ -107,7 +107,7 @@ function tipGap(context: FindingContext, tip: Tip) {
   const part = ofCentreline[c];
   const ahead = new Nearest();
   const any = new Nearest();
-  if (part < 0 || index === null) return { ahead: null, any: null };
+  if (part < 0) return { ahead: null, any: null };
   const face = paintedEndOf(network, ends[0]);
   const from = channelName(context, c);
   const plane = pieces.plane[pieces.firstPiece[c]];
@@ -206,7 +206,6 @@ function leastDistance(context: FindingContext, part: number): PartGap | null {
     isWanted: (piece: number) => boolean,
     measure: (piece: number) => void,
   ): boolean {
-    if (index === null) return false;
     if (nearest.best === null) {
       const [first] = index.neighbors((ax + bx) / 2, (ay + by) / 2, 1, Number.POSITIVE_INFINITY, isWanted);
       if (first === undefined) return false;

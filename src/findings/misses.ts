@@ -124,14 +124,14 @@ function findMiss(context: FindingContext, tip: Tip): NearMiss | null {
   let best: NearMiss | null = null;
 
   const around = limitMm + half * Math.SQRT2 + half;
-  const found = index?.search(
+  const found = index.search(
     tip.x - around,
     tip.y - around,
     tip.x + around,
     tip.y + around,
     (i) => pieces.plane[i] === channel.plane && !own.has(i) && !leftOutPieces(context).has(i),
   );
-  for (const i of found ?? []) {
+  for (const i of found) {
     const gap = painted.map((face) => gapToEnd(chip, pieces, i, face)).reduce(nearer);
     if (!isBelow(gap.distanceMm, limitMm)) continue;
     // Seen from the middle of the end, the nearest painted point says where it points and how far it must go.

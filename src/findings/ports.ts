@@ -107,7 +107,6 @@ function loosePorts(context: FindingContext): Finding[] {
 /** The painted piece nearest to a well, among those whose boxes are nearest. */
 function nearestPiece({ chip, network }: FindingContext, port: Port) {
   const { index, pieces } = network.trace.near;
-  if (index === null) return null;
   let best: { name: string; gapMm: number; mark: NonNullable<Finding['mark']> } | null = null;
   for (const i of index.neighbors(port.xMm, port.yMm, 16)) {
     const gap = gapToHole(chip, pieces, i, port);
@@ -165,7 +164,6 @@ const MOST_NODES_IN_A_WELL = 2;
 function swallowedChannels(context: FindingContext): Finding[] {
   const { chip, network } = context;
   const { index, pieces } = network.trace.near;
-  if (index === null) return [];
   const findings: Finding[] = [];
   const slack = chip.joinWithinMm;
   chip.ports.forEach((port) => {

@@ -27,7 +27,7 @@ export function findWellWalls(
   const { near } = network.trace;
   const { pieces, index } = near;
   const walls: WellWall[] = [];
-  if (index === null || chip.ports.length === 0) return walls;
+  if (chip.ports.length === 0) return walls;
   const limits = chip.channels.map((_, channel) => limitOf(channel) ?? 0);
   const widest = limits.reduce((most, limit) => Math.max(most, limit), 0);
   if (widest === 0) return walls;

@@ -13,8 +13,8 @@ const TOUCH_MM = 0.001;
 /** The one spatial index over all pieces, and the one list of pairs of pieces that come near each other. */
 export interface Nearness {
   readonly pieces: Pieces;
-  /** Boxes of the painted pieces (strip, cap and bulge), in piece order. Null when there is no piece. */
-  readonly index: BoxIndex | null;
+  /** Boxes of the painted pieces (strip, cap and bulge), in piece order. */
+  readonly index: BoxIndex;
   /** Pairs are listed when their strips come nearer than this. */
   readonly withinMm: number;
   readonly pairCount: number;
@@ -91,7 +91,7 @@ export function findNearPairs(
   const { first: firstPair, item: side } = sidesByNode(n, columns.pairA, columns.pairB);
   return {
     pieces,
-    index: n === 0 ? null : index,
+    index,
     withinMm,
     pairCount: pairA.length,
     ...columns,

@@ -3,6 +3,7 @@ import { type Rounding, sectorTo } from '../geometry/rounding.ts';
 import {
   addShapeStretches,
   addStripStretches,
+  type Line,
   type PieceShape,
   roundingAt,
   roundingAtSeam,
@@ -28,15 +29,15 @@ export class KeptStrips {
     this.ends = ends;
   }
 
-  /** Adds the stretches of a→b that lie in the strip of one piece. */
-  addStretches(into: number[], piece: number, ax: number, ay: number, bx: number, by: number): void {
+  /** Adds the stretches of a line that lie in the strip of one piece. */
+  addStretches(into: number[], piece: number, line: Line): void {
     const { pieces, slackMm } = this.draft;
     const c = pieces.centreline[piece];
     const shapes = this.changedShapes(piece);
     if (shapes === null) {
       const [from, to] = [this.kept.from[c], this.kept.to[c]];
-      addStripStretches(into, pieces, piece, ax, ay, bx, by, slackMm, this.ends, from, to);
-    } else for (const shape of shapes) addShapeStretches(into, shape, ax, ay, bx, by, slackMm);
+      addStripStretches(into, pieces, piece, line, slackMm, this.ends, from, to);
+    } else for (const shape of shapes) addShapeStretches(into, shape, line, slackMm);
   }
 
   /** What the strip of a piece is made of where joining changed it; null where it is as drawn. */
