@@ -1,4 +1,4 @@
-import { sidesByNode } from '../groups.ts';
+import { itemsOf, sidesByNode } from '../groups.ts';
 import type { Arcs } from './arcs.ts';
 import { type Arms, isLongEnough } from './arm-lengths.ts';
 import { type Arm, angleBetween, channelOf, toArm } from './arms.ts';
@@ -43,13 +43,12 @@ export function classifyNodes(draft: Draft, arcs: Arcs, tally: JointTally): Node
   };
   const around: Surroundings = { draft, arcs, sides, seams, joints, tally };
   for (let node = 0; node + 1 < sides.first.length; node++) {
-    const begin = sides.first[node];
-    const end = sides.first[node + 1];
+    const here = itemsOf(sides, node);
     const isWell = node < draft.portCount;
     // An inner point of a reach or a seam (rule 3) is no joint: duct-joints.ts looks there for a corner.
-    if (begin === end || (!isWell && (end - begin === 1 || seams[sides.item[begin]] >= 0))) continue;
+    if (here.length === 0 || (!isWell && (here.length === 1 || seams[here[0]] >= 0))) continue;
     const arms: Arm[] = [];
-    for (let k = begin; k < end; k++) arms.push(toArm(draft, arcs, sides.item[k]));
+    for (const side of here) arms.push(toArm(draft, arcs, side));
     if (isWell) markWell(around, node, arms);
     else classify(around, node, arms);
   }
