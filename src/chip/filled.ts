@@ -6,7 +6,7 @@
  */
 import { Bounds } from '../geometry/bounds.ts';
 import { indexBoxes } from '../geometry/box-index.ts';
-import { addDiscStretch, coveredUpTo } from '../geometry/strip.ts';
+import { addDiscStretch, coveredUpTo, lineTo } from '../geometry/strip.ts';
 import type { Hole, Ignored, Outline } from '../layout/types.ts';
 import { findHairlines } from './hairlines.ts';
 import { circleRing, closedRing, indexRings, outerRings } from './rings.ts';
@@ -362,16 +362,14 @@ function isAllEtched(rings: readonly Float64Array[], etched: Etched): boolean {
 }
 
 function isEdgeEtched(side: Side, { strips, wells, slackMm }: Etched): boolean {
-  const [x1, y1, x2, y2] = side;
-  const span = Math.hypot(x2 - x1, y2 - y1);
-  if (span === 0) return true;
+  const line = lineTo(...side);
+  if (line.span === 0) return true;
   const stretches: number[] = [];
   strips.addStretches(stretches, ...side);
   for (const { xMm, yMm, radiusMm } of wells.along(...side)) {
-    const [dx, dy] = [(x2 - x1) / span, (y2 - y1) / span];
-    addDiscStretch(stretches, xMm, yMm, radiusMm + slackMm, x1, y1, dx, dy, span);
+    addDiscStretch(stretches, xMm, yMm, radiusMm + slackMm, line);
   }
-  return coveredUpTo(stretches, 0, slackMm) >= span - slackMm;
+  return coveredUpTo(stretches, 0, slackMm) >= line.span - slackMm;
 }
 
 function toObstacle({ name, ordinal, rings, circle }: Shape, { channel, inside }: Place): Judgement {

@@ -2,7 +2,7 @@ import { indexBoxes } from '../geometry/box-index.ts';
 import { pieceBoxes } from '../geometry/near.ts';
 import { toPieces } from '../geometry/pieces.ts';
 import { segmentDistance } from '../geometry/segment.ts';
-import { addStripStretches, isInPieceStrip } from '../geometry/strip.ts';
+import { addStripStretches, isInPieceStrip, lineTo } from '../geometry/strip.ts';
 import type { Channel } from './types.ts';
 
 /** Questions about the etched areas of channels, before they are joined to a network. */
@@ -49,7 +49,8 @@ export function indexStrips(channels: readonly Channel[], slackMm: number): Stri
         }),
       ),
     addStretches: (into, ...line) => {
-      for (const i of piecesAlong(...line)) addStripStretches(into, pieces, i, ...line, slackMm, null);
+      const straight = lineTo(...line);
+      for (const i of piecesAlong(...line)) addStripStretches(into, pieces, i, straight, slackMm, null);
     },
     channelsAlong: (...line) =>
       channelsOf(

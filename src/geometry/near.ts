@@ -1,8 +1,8 @@
 import { InputError } from '../errors.ts';
 import { sidesByNode } from '../groups.ts';
 import { type BoxIndex, indexBoxes } from './box-index.ts';
+import { distanceBetween } from './on-piece.ts';
 import type { Pieces } from './pieces.ts';
-import { segmentDistance } from './segment.ts';
 
 export const MAX_SEGMENTS = 2_000_000;
 export const MAX_NEAR_PAIRS = 20_000_000;
@@ -63,16 +63,7 @@ export function findNearPairs(
     );
     for (const j of near) {
       if (j <= i || pieces.plane[j] !== pieces.plane[i] || areConsecutive(pieces, i, j)) continue;
-      const distance = segmentDistance(
-        pieces.x1[i],
-        pieces.y1[i],
-        pieces.x2[i],
-        pieces.y2[i],
-        pieces.x1[j],
-        pieces.y1[j],
-        pieces.x2[j],
-        pieces.y2[j],
-      );
+      const distance = distanceBetween(pieces, i, j);
       const strips = pieces.half[i] * capFactor(i) + pieces.half[j] * capFactor(j);
       if (distance > strips + withinMm + pieces.bulge[i] + pieces.bulge[j]) continue;
       if (isOwnBend(pieces, i, j, distance)) continue;

@@ -1,5 +1,5 @@
 import type { Pieces } from './pieces.ts';
-import { distanceToSegment, nearestParameter } from './segment.ts';
+import { crossingParameter, distanceToSegment, nearestParameter, segmentDistance } from './segment.ts';
 
 /** Distance of a point from the centreline of a piece, mm. */
 export function distanceToPiece(pieces: Pieces, i: number, x: number, y: number): number {
@@ -34,6 +34,16 @@ export function placeOn(pieces: Pieces, i: number, share: number): PlaceOn {
     y: pieces.y1[i] + share * (pieces.y2[i] - pieces.y1[i]),
     s: pieces.start[i] + share * pieces.length[i],
   };
+}
+
+/** Distance between the centrelines of two pieces, mm. */
+export function distanceBetween({ x1, y1, x2, y2 }: Pieces, i: number, j: number): number {
+  return segmentDistance(x1[i], y1[i], x2[i], y2[i], x1[j], y1[j], x2[j], y2[j]);
+}
+
+/** The share 0…1 of piece i at which piece j crosses it; NaN where none does. */
+export function crossingShare({ x1, y1, x2, y2 }: Pieces, i: number, j: number): number {
+  return crossingParameter(x1[i], y1[i], x2[i], y2[i], x1[j], y1[j], x2[j], y2[j]);
 }
 
 /** Sine of the angle from one piece to another. */

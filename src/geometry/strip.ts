@@ -1,3 +1,4 @@
+import { besidePiece } from './on-piece.ts';
 import { endsAtVertex, goesOnSmoothly, neighbourPiece, type Pieces, startsAtVertex } from './pieces.ts';
 import { ROUND, type Rounding, roundingAtVertex } from './rounding.ts';
 
@@ -24,27 +25,20 @@ export function isInPieceStrip(
   ends: StripEnds | null,
 ): boolean {
   const half = pieces.half[piece] + slackMm;
-  const ax = pieces.x1[piece];
-  const ay = pieces.y1[piece];
-  const bx = pieces.x2[piece];
-  const by = pieces.y2[piece];
   const length = pieces.length[piece];
-  const ux = (bx - ax) / length;
-  const uy = (by - ay) / length;
-  const along = (x - ax) * ux + (y - ay) * uy;
-  const across = (y - ay) * ux - (x - ax) * uy;
+  const { along, across } = besidePiece(pieces, piece, x, y);
+  const [fromX, fromY] = [x - pieces.x1[piece], y - pieces.y1[piece]];
+  const [beyondX, beyondY] = [x - pieces.x2[piece], y - pieces.y2[piece]];
   if (pieces.bulge[piece] > 0) {
     const { startOut, endOut } = cutEnds(pieces, piece, ends);
-    const atStart = startOut === null ? -along : (x - ax) * startOut[0] + (y - ay) * startOut[1];
-    const atEnd = endOut === null ? along - length : (x - bx) * endOut[0] + (y - by) * endOut[1];
+    const atStart = startOut === null ? -along : fromX * startOut[0] + fromY * startOut[1];
+    const atEnd = endOut === null ? along - length : beyondX * endOut[0] + beyondY * endOut[1];
     if (Math.abs(across) <= half && atStart <= slackMm && atEnd <= slackMm) return true;
     if ((along < 0 ? startOut : endOut) !== null) return false;
   } else if (Math.abs(across) <= half && along >= -slackMm && along <= length + slackMm) return true;
-  if (along < 0)
-    return isInRound(roundingAt(pieces, piece, -1, ends, slackMm), x - ax, y - ay, half, slackMm);
-  if (along > length)
-    return isInRound(roundingAt(pieces, piece, 1, ends, slackMm), x - bx, y - by, half, slackMm);
-  return false;
+  if (along < 0) return isInRound(roundingAt(pieces, piece, -1, ends, slackMm), fromX, fromY, half, slackMm);
+  const rounding = along > length ? roundingAt(pieces, piece, 1, ends, slackMm) : null;
+  return isInRound(rounding, beyondX, beyondY, half, slackMm);
 }
 
 /** Whether a place beyond the end of a piece, seen from there, lies in the round. */
@@ -53,18 +47,30 @@ function isInRound(rounding: Rounding | null, x: number, y: number, half: number
   return rounding === ROUND || x * rounding.onX + y * rounding.onY <= Math.max(rounding.mostMm, slackMm);
 }
 
+/** A straight line: where it begins, its unit direction (none where it has no length) and how long it is, mm. */
+export interface Line {
+  readonly ax: number;
+  readonly ay: number;
+  readonly dx: number;
+  readonly dy: number;
+  readonly span: number;
+}
+
+/** The line a→b. */
+export function lineTo(ax: number, ay: number, bx: number, by: number): Line {
+  const span = Math.hypot(bx - ax, by - ay);
+  return { ax, ay, dx: (bx - ax) / span, dy: (by - ay) / span, span };
+}
+
 /**
- * Adds to `into` the stretches [from, to] (distance along a→b) of the straight line a→b that lie inside the strip of one
+ * Adds to `into` the stretches [from, to] (distance along the line) of a line that lie inside the strip of one
  * piece. A stretch that leaves through a square end is cut at the exact end, also where slack let it in.
  */
 export function addStripStretches(
   into: number[],
   pieces: Pieces,
   piece: number,
-  ax: number,
-  ay: number,
-  bx: number,
-  by: number,
+  line: Line,
   slackMm: number,
   ends: StripEnds | null,
   keptFrom = 0,
@@ -83,7 +89,7 @@ export function addStripStretches(
     atEnd: roundingAt(pieces, piece, 1, ends, slackMm, keptFrom, keptTo),
     ...(pieces.bulge[piece] > 0 ? cutEnds(pieces, piece, ends) : STRAIGHT),
   };
-  addShapeStretches(into, shape, ax, ay, bx, by, slackMm);
+  addShapeStretches(into, shape, line, slackMm);
 }
 
 /** Directions out of a piece at ends that are cut straight, but not square to the piece; null where square, or round. */
@@ -159,24 +165,14 @@ export interface PieceShape extends CutEnds {
 }
 
 /** The same for one shape. */
-export function addShapeStretches(
-  into: number[],
-  shape: PieceShape,
-  ax: number,
-  ay: number,
-  bx: number,
-  by: number,
-  slackMm: number,
-): void {
-  const span = Math.hypot(bx - ax, by - ay);
+export function addShapeStretches(into: number[], shape: PieceShape, line: Line, slackMm: number): void {
+  const { ax, ay, dx, dy, span } = line;
   if (span === 0) return;
   const { px, py, qx, qy, length, half, growMm = 0, atStart, atEnd, startOut, endOut } = shape;
   const startIsRound = atStart !== null;
   const endIsRound = atEnd !== null;
   const ux = (qx - px) / length;
   const uy = (qy - py) / length;
-  const dx = (bx - ax) / span;
-  const dy = (by - ay) / span;
   // In the piece's own frame: u along, v across; the line is (u0 + t du, v0 + t dv).
   const u0 = (ax - px) * ux + (ay - py) * uy;
   const v0 = (ay - py) * ux - (ax - px) * uy;
@@ -205,14 +201,14 @@ export function addShapeStretches(
   /** The round at (x, y), where the piece ends in direction (outX, outY). */
   function addRound(rounding: Rounding, x: number, y: number, outX: number, outY: number): void {
     if (rounding === ROUND) {
-      addDiscStretch(into, x, y, half, ax, ay, dx, dy, span);
+      addDiscStretch(into, x, y, half, line);
       return;
     }
     const beyond = beside([-outX, -outY], x, y, TINY_MM);
     const before = beside([rounding.onX, rounding.onY], x, y, rounding.mostMm);
     if (beyond === null || before === null) return;
     const disc: number[] = [];
-    addDiscStretch(disc, x, y, half, ax, ay, dx, dy, span);
+    addDiscStretch(disc, x, y, half, line);
     if (disc.length === 0) return;
     const from = Math.max(beyond[0], before[0], disc[0]);
     const to = Math.min(beyond[1], before[1], disc[1]);
@@ -328,18 +324,9 @@ function stretchWithin(
   return from <= to ? [from, to] : null;
 }
 
-/** The same for a disc; (dx, dy) is the unit vector from a to b, `span` their distance. */
-export function addDiscStretch(
-  into: number[],
-  cx: number,
-  cy: number,
-  radius: number,
-  ax: number,
-  ay: number,
-  dx: number,
-  dy: number,
-  span: number,
-): void {
+/** The same for a disc. */
+export function addDiscStretch(into: number[], cx: number, cy: number, radius: number, line: Line): void {
+  const { ax, ay, dx, dy, span } = line;
   const b = (cx - ax) * dx + (cy - ay) * dy;
   const across = (cy - ay) * dx - (cx - ax) * dy;
   const halfChordSquared = radius * radius - across * across;

@@ -183,7 +183,7 @@ class Polyline {
     if (polygon - chord <= LOSS * (polygon + chord) || polygon <= smallest) {
       const points = [x0, y0, x1, y1, x2, y2, x3, y3];
       const curve = polygon > chord ? ({ kind: 'cubic', points } as const) : null;
-      this.#add(x3, y3, middleRadius(x0, y0, x1, y1, x2, y2, x3, y3, chord), curve);
+      this.#add(x3, y3, middleRadius(points, chord), curve);
       return;
     }
     const ax = (x0 + x1) / 2;
@@ -339,17 +339,7 @@ function ellipseRadius(e: Ellipse, t: number, chord: number): number {
 }
 
 /** |P′|³ / |P′ × P″| of a cubic at its middle, where P′ = ¾(P3 + P2 − P1 − P0) and P″ = 3(P0 − P1 − P2 + P3). */
-function middleRadius(
-  x0: number,
-  y0: number,
-  x1: number,
-  y1: number,
-  x2: number,
-  y2: number,
-  x3: number,
-  y3: number,
-  chord: number,
-): number {
+function middleRadius([x0, y0, x1, y1, x2, y2, x3, y3]: readonly number[], chord: number): number {
   const dx = 0.75 * (x3 + x2 - x1 - x0);
   const dy = 0.75 * (y3 + y2 - y1 - y0);
   const ddx = 3 * (x0 - x1 - x2 + x3);

@@ -1,3 +1,4 @@
+import { remembered } from '../by-key.ts';
 import type { Nearness } from '../geometry/near.ts';
 import type { Pieces } from '../geometry/pieces.ts';
 import { type Groups, itemsOf, toGroups } from '../groups.ts';
@@ -101,9 +102,8 @@ function shortStrokesAt(pieces: Pieces, links: readonly Link[], slackMm: number)
   const short = new Map<number, number[]>();
   const add = (end: number, other: number): void => {
     if (pieces.centrelineLength[other >> 1] > slackMm) return;
-    const list = short.get(end);
-    if (list === undefined) short.set(end, [other]);
-    else if (list.length < MOST_SHORT_STROKES && !list.includes(other)) list.push(other);
+    const list = remembered(short, end, () => []);
+    if (list.length < MOST_SHORT_STROKES && !list.includes(other)) list.push(other);
   };
   for (const [a, b] of links) {
     add(a, a);

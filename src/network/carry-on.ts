@@ -49,14 +49,14 @@ export function carryOn(draft: Draft, end: number, { centreline, piece, distance
   const reach = distance <= slackMm ? FLAT * slackMm : 2 * pieces.half[piece] + slackMm;
   let best = Number.POSITIVE_INFINITY;
   let place = placeOn(pieces, piece, nearestShare(pieces, piece, x, y));
-  const found = near.index?.search(
+  const found = near.index.search(
     Math.min(x, x + ox * reach),
     Math.min(y, y + oy * reach),
     Math.max(x, x + ox * reach),
     Math.max(y, y + oy * reach),
     (i) => pieces.centreline[i] === centreline,
   );
-  for (const i of found ?? []) {
+  for (const i of found) {
     if (centreline === end >> 1 && i === endPiece(pieces, end)) continue;
     const vx = pieces.x2[i] - pieces.x1[i];
     const vy = pieces.y2[i] - pieces.y1[i];

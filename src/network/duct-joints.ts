@@ -27,11 +27,12 @@ export function addDuctJoints(draft: Draft, reaches: Reaches, runs: Chains, tall
     reachJointBoundMm: new Float64Array(reaches.reachCount),
   };
   const run = new Run();
+  const adding: Adding = { run, joints, tally };
   for (let n = 0; n < runs.count; n++) {
     run.set(draft.chip, reaches, runs, n);
     if (Number.isNaN(run.aspect)) continue;
-    addCorners(run, joints, tally, draft.slackMm);
-    addBends(run, joints, tally);
+    addCorners(adding, draft.slackMm);
+    addBends(adding);
   }
   return joints;
 }
@@ -89,7 +90,15 @@ class Run {
   }
 }
 
-function addCorners(run: Run, joints: ReachJoints, tally: JointTally, slackMm: number): void {
+/** The run whose joints are looked for, and where they are added. */
+interface Adding {
+  readonly run: Run;
+  readonly joints: ReachJoints;
+  readonly tally: JointTally;
+}
+
+function addCorners(adding: Adding, slackMm: number): void {
+  const { run, joints } = adding;
   const { width, count, isLoop } = run;
   // A bend is a joint too, where it turns by more than the tolerance over the room that a corner needs. It has no meeting
   // point; it begins where a mitre's square would: half a width before.
@@ -100,7 +109,7 @@ function addCorners(run: Run, joints: ReachJoints, tally: JointTally, slackMm: n
   let waiting: { turn: number; behind: number; k: number } | null = null;
   const settle = (ahead: number): void => {
     if (waiting === null) return;
-    addCorner(run, joints, tally, waiting.k, waiting.turn, Math.min(waiting.behind, ahead));
+    addCorner(adding, waiting.k, waiting.turn, Math.min(waiting.behind, ahead));
     waiting = null;
   };
   if (isLoop) sinceJoint = Number.POSITIVE_INFINITY;
@@ -139,14 +148,7 @@ function addAt(run: Run, into: Float64Array, k: number, value: number): void {
   into[run.reach[k + 1]] += value / 2;
 }
 
-function addCorner(
-  run: Run,
-  joints: ReachJoints,
-  tally: JointTally,
-  at: number,
-  turn: number,
-  room: number,
-): void {
+function addCorner({ run, joints, tally }: Adding, at: number, turn: number, room: number): void {
   const { width, aspect } = run;
   const [x, y] = [run.x[at + 1], run.y[at + 1]];
   const isComputed = turn <= MITRE_MAX_TURN_RAD + 1e-9;
@@ -165,10 +167,11 @@ function addCorner(
   tally.add('corner not computed', 0, bound, x, y);
 }
 
-function addBends(run: Run, joints: ReachJoints, tally: JointTally): void {
+function addBends(adding: Adding): void {
+  const { run } = adding;
   for (let k = 0; k < run.count; ) {
     const next = run.radius[k] === 0 ? k + 1 : endOfBend(run, k);
-    if (run.radius[k] > 0) addBend(run, joints, tally, k, next);
+    if (run.radius[k] > 0) addBend(adding, k, next);
     k = next;
   }
 }
@@ -185,7 +188,7 @@ function endOfBend(run: Run, k: number): number {
   return next;
 }
 
-function addBend(run: Run, joints: ReachJoints, tally: JointTally, from: number, to: number): void {
+function addBend({ run, joints, tally }: Adding, from: number, to: number): void {
   const { width, aspect } = run;
   let angle = 0;
   let tightest = Number.POSITIVE_INFINITY;

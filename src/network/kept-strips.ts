@@ -3,6 +3,7 @@ import { type Rounding, sectorTo } from '../geometry/rounding.ts';
 import {
   addShapeStretches,
   addStripStretches,
+  type Line,
   type PieceShape,
   roundingAt,
   roundingAtSeam,
@@ -28,25 +29,20 @@ export class KeptStrips {
     this.ends = ends;
   }
 
-  /** Adds the stretches of a→b that lie in the strip of one piece. */
-  addStretches(into: number[], piece: number, ax: number, ay: number, bx: number, by: number): void {
+  /** Adds the stretches of a line that lie in the strip of one piece. */
+  addStretches(into: number[], piece: number, line: Line): void {
     const { pieces, slackMm } = this.draft;
-    const c = pieces.centreline[piece];
     const shapes = this.changedShapes(piece);
     if (shapes === null) {
-      const [from, to] = [this.kept.from[c], this.kept.to[c]];
-      addStripStretches(into, pieces, piece, ax, ay, bx, by, slackMm, this.ends, from, to);
-    } else for (const shape of shapes) addShapeStretches(into, shape, ax, ay, bx, by, slackMm);
+      const { from, to } = this.placeOf(piece);
+      addStripStretches(into, pieces, piece, line, slackMm, this.ends, from, to);
+    } else for (const shape of shapes) addShapeStretches(into, shape, line, slackMm);
   }
 
   /** What the strip of a piece is made of where joining changed it; null where it is as drawn. */
   private changedShapes(piece: number): PieceShape[] | null {
     const { pieces } = this.draft;
-    const c = pieces.centreline[piece];
-    const from = this.kept.from[c];
-    const to = this.kept.to[c];
-    const start = pieces.start[piece];
-    const end = start + pieces.length[piece];
+    const { c, from, to, start, end } = this.placeOf(piece);
     const growsAtStart =
       piece === endPiece(pieces, 2 * c) && from < 0 && isCarriedStraightOn(this.draft, 2 * c);
     const growsAtEnd =
@@ -70,11 +66,7 @@ export class KeptStrips {
   /** A curve carried on straight turns a little where it is: its piece and what was carried on are two straight pieces. */
   private shapesBesideCurve(piece: number, growsAtStart: boolean, growsAtEnd: boolean): PieceShape[] {
     const { pieces } = this.draft;
-    const c = pieces.centreline[piece];
-    const from = this.kept.from[c];
-    const to = this.kept.to[c];
-    const start = pieces.start[piece];
-    const end = start + pieces.length[piece];
+    const { c, from, to, start, end } = this.placeOf(piece);
     const low = growsAtStart ? start : Math.max(start, from);
     const high = growsAtEnd ? end : Math.min(end, to);
     const outOf = (end: number): Rounding => sectorTo(pieces.outX[end], pieces.outY[end]);
@@ -94,14 +86,22 @@ export class KeptStrips {
     return shapes;
   }
 
+  /** What of a piece's centreline is kept, and where on it the piece lies. */
+  private placeOf(piece: number) {
+    const { centreline, start, length } = this.draft.pieces;
+    const c = centreline[piece];
+    const [from, to] = [this.kept.from[c], this.kept.to[c]];
+    return { c, from, to, start: start[piece], end: start[piece] + length[piece] };
+  }
+
   private seamRounding(end: number): Rounding | null {
     return roundingAtSeam(this.draft.pieces, end, this.ends, this.draft.slackMm);
   }
 
   private vertexRounding(piece: number, side: -1 | 1): Rounding | null {
     const { pieces, slackMm } = this.draft;
-    const c = pieces.centreline[piece];
-    return roundingAt(pieces, piece, side, this.ends, slackMm, this.kept.from[c], this.kept.to[c]);
+    const { from, to } = this.placeOf(piece);
+    return roundingAt(pieces, piece, side, this.ends, slackMm, from, to);
   }
 
   /** The straight piece of a centreline between two positions; none without length. */

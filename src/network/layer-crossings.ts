@@ -1,3 +1,4 @@
+import { remembered } from '../by-key.ts';
 import type { Port } from '../chip/types.ts';
 import type { Nearness } from '../geometry/near.ts';
 import { distanceToPiece, nearestShare } from '../geometry/on-piece.ts';
@@ -87,11 +88,7 @@ function isInWell({ xMm, yMm, radiusMm }: Port, { x, y }: Point): boolean {
 
 /** A crossing at a vertex is found on both pieces that meet there. */
 function isKnown(seen: Map<string, number[]>, key: string, s: number, slackMm: number): boolean {
-  const known = seen.get(key);
-  if (known === undefined) {
-    seen.set(key, [s]);
-    return false;
-  }
+  const known = remembered(seen, key, () => []);
   if (known.some((other) => Math.abs(other - s) <= slackMm)) return true;
   known.push(s);
   return false;

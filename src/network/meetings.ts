@@ -1,4 +1,4 @@
-import { distanceToPiece, nearestShare, placeOn, sineBetween } from '../geometry/on-piece.ts';
+import { crossingShare, distanceToPiece, nearestShare, placeOn, sineBetween } from '../geometry/on-piece.ts';
 import {
   endsAtVertex,
   goesOnSmoothly,
@@ -30,23 +30,11 @@ export function markMeetings(draft: Draft): void {
 
 function markCrossing(draft: Draft, i: number, j: number): boolean {
   const { pieces } = draft;
-  const ax = pieces.x1[i];
-  const ay = pieces.y1[i];
-  const cx = pieces.x1[j];
-  const cy = pieces.y1[j];
-  const ux = pieces.x2[i] - ax;
-  const uy = pieces.y2[i] - ay;
-  const vx = pieces.x2[j] - cx;
-  const vy = pieces.y2[j] - cy;
-  const cross = ux * vy - uy * vx;
   // Parallel to within rounding of the direction: no single crossing point, the vertices tell (markTouches).
-  if (Math.abs(cross) <= 1e-12 * pieces.length[i] * pieces.length[j]) return false;
-  const wx = cx - ax;
-  const wy = cy - ay;
-  const s = (wx * vy - wy * vx) / cross;
-  const t = (wx * uy - wy * ux) / cross;
-  if (!(s >= 0 && s <= 1 && t >= 0 && t <= 1)) return false;
-  addMeeting(draft, i, s, j, t);
+  if (Math.abs(sineBetween(pieces, i, j)) <= 1e-12) return false;
+  const s = crossingShare(pieces, i, j);
+  if (Number.isNaN(s)) return false;
+  addMeeting(draft, i, s, j, crossingShare(pieces, j, i));
   return true;
 }
 

@@ -33,7 +33,7 @@ export function findNearPieces(chip: Chip, withinMm: number): Nearness {
 
 /** Finer than a share of the drawing no curve need be cut: on one of many metres it would cost time without bound. */
 function finenessMm({ index }: Nearness): number {
-  const extentMm = index === null ? 0 : Math.max(index.maxX - index.minX, index.maxY - index.minY);
+  const extentMm = Math.max(index.maxX - index.minX, index.maxY - index.minY);
   return Math.max(FINE_MM, FINE_MM * (extentMm / 1000));
 }
 
@@ -72,8 +72,8 @@ function markAroundEnds(chip: Chip, near: Nearness, cut: Uint8Array): void {
       const strip = pieces.half[other] + chip.joinWithinMm + pieces.bulge[other];
       if (distanceToPiece(pieces, other, x, y) > strip) continue;
       const reach = 2 * strip;
-      const found = index?.search(x - reach, y - reach, x + reach, y + reach, (i) => pieces.curves.has(i));
-      for (const i of found ?? []) if (pieces.channel[i] === pieces.channel[other]) cut[i] = 1;
+      const found = index.search(x - reach, y - reach, x + reach, y + reach, (i) => pieces.curves.has(i));
+      for (const i of found) if (pieces.channel[i] === pieces.channel[other]) cut[i] = 1;
     }
   }
 }
@@ -81,7 +81,7 @@ function markAroundEnds(chip: Chip, near: Nearness, cut: Uint8Array): void {
 function markAtWells(chip: Chip, { pieces, index }: Nearness, cut: Uint8Array): void {
   for (const { xMm, yMm, radiusMm } of chip.ports) {
     const r = radiusMm + chip.joinWithinMm;
-    for (const i of index?.search(xMm - r, yMm - r, xMm + r, yMm + r) ?? []) {
+    for (const i of index.search(xMm - r, yMm - r, xMm + r, yMm + r)) {
       if (distanceToPiece(pieces, i, xMm, yMm) <= r + pieces.half[i] + pieces.bulge[i]) mark(pieces, cut, i);
     }
   }

@@ -1,6 +1,6 @@
-import { sidesByNode } from '../groups.ts';
+import { itemsOf, sidesByNode } from '../groups.ts';
 import type { Arcs } from './arcs.ts';
-import { ArmLengths } from './arm-lengths.ts';
+import { type Arms, isLongEnough } from './arm-lengths.ts';
 import { type Arm, angleBetween, channelOf, toArm } from './arms.ts';
 import { passages } from './chains.ts';
 import { type Computed, computedJoint, isOfOneDepth, isSquareTee } from './computed-joints.ts';
@@ -41,21 +41,14 @@ export function classifyNodes(draft: Draft, arcs: Arcs, tally: JointTally): Node
     sideBoundMm: new Float64Array(2 * arcs.arcCount),
     trimming: new Uint8Array(draft.nodes.size),
   };
-  const around: Surroundings = {
-    draft,
-    arcs,
-    joints,
-    tally,
-    lengths: new ArmLengths(draft, arcs, sides, seams),
-  };
+  const around: Surroundings = { draft, arcs, sides, seams, joints, tally };
   for (let node = 0; node + 1 < sides.first.length; node++) {
-    const begin = sides.first[node];
-    const end = sides.first[node + 1];
+    const here = itemsOf(sides, node);
     const isWell = node < draft.portCount;
     // An inner point of a reach or a seam (rule 3) is no joint: duct-joints.ts looks there for a corner.
-    if (begin === end || (!isWell && (end - begin === 1 || seams[sides.item[begin]] >= 0))) continue;
+    if (here.length === 0 || (!isWell && (here.length === 1 || seams[here[0]] >= 0))) continue;
     const arms: Arm[] = [];
-    for (let k = begin; k < end; k++) arms.push(toArm(draft, arcs, sides.item[k]));
+    for (const side of here) arms.push(toArm(draft, arcs, side));
     if (isWell) markWell(around, node, arms);
     else classify(around, node, arms);
   }
@@ -63,12 +56,9 @@ export function classifyNodes(draft: Draft, arcs: Arcs, tally: JointTally): Node
 }
 
 /** What a node is classified by, and where it is written down. */
-interface Surroundings {
-  readonly draft: Draft;
-  readonly arcs: Arcs;
+interface Surroundings extends Arms {
   readonly joints: NodeJoints;
   readonly tally: JointTally;
-  readonly lengths: ArmLengths;
 }
 
 function markWell({ draft, joints, tally }: Surroundings, node: number, arms: readonly Arm[]): void {
@@ -84,11 +74,8 @@ function markWell({ draft, joints, tally }: Surroundings, node: number, arms: re
   }
 }
 
-function classify(
-  { draft, arcs, joints, tally, lengths }: Surroundings,
-  node: number,
-  arms: readonly Arm[],
-): void {
+function classify(around: Surroundings, node: number, arms: readonly Arm[]): void {
+  const { draft, arcs, joints, tally } = around;
   if (arms.some(({ channel }) => Number.isNaN(channel.depthMm))) return;
   const { side } = arms[0];
   const { x, y } = pointAt(
@@ -97,7 +84,7 @@ function classify(
     ((side & 1) === 0 ? arcs.arcFrom : arcs.arcTo)[side >> 1],
   );
   const found = computedJoint(arms);
-  if (found?.parts.every((part) => lengths.isLongEnough(part.arm.side, part.apartMm, part.wallMm))) {
+  if (found?.parts.every((part) => isLongEnough(around, part.arm.side, part.apartMm, part.wallMm))) {
     let added = 0;
     let bound = 0;
     for (const { arm, lengthMm, boundMm } of found.parts) {

@@ -1,6 +1,7 @@
+import { grouped, remembered } from '../by-key.ts';
 import { piecesNear } from '../geometry/near.ts';
 import { pieceAt } from '../geometry/pieces.ts';
-import { addStripStretches, coveredUpTo } from '../geometry/strip.ts';
+import { addStripStretches, coveredUpTo, type Line, lineTo } from '../geometry/strip.ts';
 import { type Draft, ROUNDING_MM } from './draft.ts';
 import type { KeptStrips } from './kept-strips.ts';
 
@@ -49,7 +50,8 @@ export class Strips {
     const near = piecesNearExtension(draft, end).filter((piece) => this.isOf(piece, key));
     const { x, y, tipX, tipY, extension } = draft.ends;
     const offset = extension[end] - span;
-    const inside = this.coverage([...near, ...grownHere], tipX[end], tipY[end], x[end], y[end], offset);
+    const line = lineTo(tipX[end], tipY[end], x[end], y[end]);
+    const inside = this.coverage([...near, ...grownHere], line, offset);
     if (inside < span - ROUNDING_MM) return inside;
     return this.reachDrawn(centreline, from < 0 ? 0 : length, direction, key, grownHere, inside);
   }
@@ -74,9 +76,10 @@ export class Strips {
     let offset = forward ? from - start[piece] : start[piece] + length[piece] - from;
     for (let count = last - first + 2; count > 0; count--) {
       const near = grown.length === 0 ? this.near(piece, key) : [...this.near(piece, key), ...grown];
-      const inside = forward
-        ? this.coverage(near, x1[piece], y1[piece], x2[piece], y2[piece], offset)
-        : this.coverage(near, x2[piece], y2[piece], x1[piece], y1[piece], offset);
+      const line = forward
+        ? lineTo(x1[piece], y1[piece], x2[piece], y2[piece])
+        : lineTo(x2[piece], y2[piece], x1[piece], y1[piece]);
+      const inside = this.coverage(near, line, offset);
       walked += inside;
       if (inside < length[piece] - offset - ROUNDING_MM) return walked;
       if (piece === (forward ? last : first)) {
@@ -93,17 +96,9 @@ export class Strips {
     const { near, pieces } = this.draft;
     const count = near.firstPair[piece + 1] - near.firstPair[piece];
     if (count <= FEW) return piecesNear(near, piece).filter((other) => this.isOf(other, key));
-    let byKey = this.sorted.get(piece);
-    if (byKey === undefined) {
-      byKey = new Map();
-      for (const other of piecesNear(near, piece)) {
-        const otherKey = this.keyOf(pieces.centreline[other]);
-        const list = byKey.get(otherKey);
-        if (list === undefined) byKey.set(otherKey, [other]);
-        else list.push(other);
-      }
-      this.sorted.set(piece, byKey);
-    }
+    const byKey = remembered(this.sorted, piece, () =>
+      grouped(piecesNear(near, piece), (other) => this.keyOf(pieces.centreline[other])),
+    );
     return byKey.get(key) ?? [];
   }
 
@@ -111,22 +106,15 @@ export class Strips {
     return this.keyOf(this.draft.pieces.centreline[piece]) === key;
   }
 
-  /** Length from `offset` on along a→b that the strip's pieces cover without a gap. */
-  private coverage(
-    near: readonly number[],
-    ax: number,
-    ay: number,
-    bx: number,
-    by: number,
-    offset: number,
-  ): number {
+  /** Length from `offset` on along a line that the strip's pieces cover without a gap. */
+  private coverage(near: readonly number[], line: Line, offset: number): number {
     const { pieces, slackMm } = this.draft;
     const stretches: number[] = [];
     for (const i of near) {
-      if (this.kept !== null) this.kept.addStretches(stretches, i, ax, ay, bx, by);
+      if (this.kept !== null) this.kept.addStretches(stretches, i, line);
       else {
         const length = pieces.centrelineLength[pieces.centreline[i]];
-        addStripStretches(stretches, pieces, i, ax, ay, bx, by, slackMm, null, 0, length, slackMm);
+        addStripStretches(stretches, pieces, i, line, slackMm, null, 0, length, slackMm);
       }
     }
     return Math.max(0, coveredUpTo(stretches, offset, slackMm) - offset);
@@ -140,13 +128,11 @@ export function piecesNearExtension(
   withinMm = 0,
 ): number[] {
   const { plane } = chip.channels[pieces.centrelineChannel[end >> 1]];
-  return (
-    near.index?.search(
-      Math.min(ends.x[end], ends.tipX[end]) - withinMm,
-      Math.min(ends.y[end], ends.tipY[end]) - withinMm,
-      Math.max(ends.x[end], ends.tipX[end]) + withinMm,
-      Math.max(ends.y[end], ends.tipY[end]) + withinMm,
-      (i) => pieces.plane[i] === plane,
-    ) ?? []
+  return near.index.search(
+    Math.min(ends.x[end], ends.tipX[end]) - withinMm,
+    Math.min(ends.y[end], ends.tipY[end]) - withinMm,
+    Math.max(ends.x[end], ends.tipX[end]) + withinMm,
+    Math.max(ends.y[end], ends.tipY[end]) + withinMm,
+    (i) => pieces.plane[i] === plane,
   );
 }

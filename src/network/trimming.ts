@@ -28,12 +28,10 @@ export function findTrims(
   const { centrelineClosed, centrelineCount } = draft.pieces;
   const trimmer = new Trimmer(draft, kept, strips);
   for (let node = 0; node + 1 < byNode.first.length; node++) {
-    const begin = byNode.first[node];
-    const end = byNode.first[node + 1];
-    if (end - begin < 2 || allEqual(draft, stops, byNode, begin, end)) continue;
-    const here = toMeeting(draft, stops, itemsOf(byNode, node), strips.group, trimming[node]);
-    for (let m = begin; m < end; m++) {
-      const stop = byNode.item[m];
+    const own = itemsOf(byNode, node);
+    if (own.length < 2 || areEqual(draft, stops, own)) continue;
+    const here = toMeeting(draft, stops, own, strips.group, trimming[node]);
+    for (const stop of own) {
       const c = stops.centreline[stop];
       const closed = centrelineClosed[c] === 1;
       if (closed || stops.from[stop] > kept.from[c]) trimmer.trimArm(here, c, stops.from[stop], -1);
@@ -177,17 +175,13 @@ function pieceOf(pieces: Pieces, c: number, position: number, direction: 1 | -1)
   return isPastEnd && isClosed ? endPiece(pieces, 2 * c) : piece;
 }
 
-function allEqual(draft: Draft, stops: Stops, byNode: Groups, begin: number, end: number): boolean {
-  const first = channelAt(draft, stops, byNode.item[begin]);
-  for (let m = begin + 1; m < end; m++) {
-    const other = channelAt(draft, stops, byNode.item[m]);
-    if (other !== first && !isEqualDuct(draft.chip.channels[other], draft.chip.channels[first])) return false;
+function areEqual({ chip, pieces }: Draft, { centreline }: Stops, own: Int32Array): boolean {
+  const first = pieces.centrelineChannel[centreline[own[0]]];
+  for (const stop of own) {
+    const other = pieces.centrelineChannel[centreline[stop]];
+    if (other !== first && !isEqualDuct(chip.channels[other], chip.channels[first])) return false;
   }
   return true;
-}
-
-function channelAt(draft: Draft, stops: Stops, stop: number): number {
-  return draft.pieces.centrelineChannel[stops.centreline[stop]];
 }
 
 /** min(1, w/W) · min(1, h/H)³; a depth that is not known counts as equal. */

@@ -1,7 +1,7 @@
 import type { Port } from '../chip/types.ts';
 import { piecesNear } from '../geometry/near.ts';
 import { besidePiece, distanceToPiece, nearestShare, placeOn } from '../geometry/on-piece.ts';
-import { endPiece } from '../geometry/pieces.ts';
+import { endPiece, type Pieces } from '../geometry/pieces.ts';
 import { ROUND, type Rounding } from '../geometry/rounding.ts';
 import { roundingAt } from '../geometry/strip.ts';
 import { type Draft, END_IN_PORT, endPosition } from './draft.ts';
@@ -21,7 +21,6 @@ export function markWells(draft: Draft): void {
 
 function markWell(draft: Draft, port: Port, p: number): void {
   const { near, pieces, slackMm } = draft;
-  if (near.index === null) return;
   const r = port.radiusMm + slackMm;
   const found = near.index.search(port.xMm - r, port.yMm - r, port.xMm + r, port.yMm + r);
   const overlapped: Overlapped = new Map();
@@ -63,8 +62,7 @@ function goesOnNearer(
   s: number,
 ): boolean {
   const { near, pieces, ends, slackMm } = draft;
-  if (pieces.centrelineClosed[c] === 1) return false;
-  const end = s === 0 ? 2 * c : s === pieces.centrelineLength[c] ? 2 * c + 1 : -1;
+  const end = endAt(pieces, c, s);
   if (end < 0) return false;
   const distance = overlapped.get(c)?.distance ?? 0;
   return piecesNear(near, endPiece(pieces, end)).some((i) => {
@@ -98,14 +96,7 @@ function markInside(draft: Draft, port: Port, p: number, i: number): boolean {
   const gap = Math.hypot(px, py) - port.radiusMm;
   if (gap > slackMm) return false;
   const s = pieces.start[i] + t;
-  const end =
-    pieces.centrelineClosed[c] === 1
-      ? -1
-      : s === 0
-        ? 2 * c
-        : t === pieces.length[i] && i === endPiece(pieces, 2 * c + 1)
-          ? 2 * c + 1
-          : -1;
+  const end = endAt(pieces, c, s);
   if (end >= 0 && ends.state[end] !== END_IN_PORT) {
     // Drawn short of the rim by less than the slack: carried on to the exact rim.
     ends.state[end] = END_IN_PORT;
@@ -119,6 +110,12 @@ function markInside(draft: Draft, port: Port, p: number, i: number): boolean {
     draft.marks.addWell(c, s, s, p);
   }
   return true;
+}
+
+/** The end at a position of an open centreline, −1 for any other place. */
+function endAt({ centrelineClosed, centrelineLength }: Pieces, c: number, s: number): number {
+  if (centrelineClosed[c] === 1) return -1;
+  return s === 0 ? 2 * c : s === centrelineLength[c] ? 2 * c + 1 : -1;
 }
 
 /** An end inside a port's circle joins that port and nothing else. */

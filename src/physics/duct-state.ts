@@ -5,7 +5,7 @@
  * never multiply a resistance themselves: with walls that give or a fluid that thins it is no constant of the section.
  */
 import type { DuctFactors, DuctForm, ShearRange } from './duct.ts';
-import { floorShareInside, sideShareInside } from './duct.ts';
+import { wallShareInside } from './duct.ts';
 import { entranceLength } from './entrance.ts';
 import { reynoldsNumber } from './reynolds.ts';
 
@@ -100,11 +100,14 @@ export function wallShear({ form, gradientPaM }: DuctState, wall: Wall, at: Shea
   return shearPerGradient(form, wall, at) * gradientPaM;
 }
 
-/** Share (0 … 1) of a wall whose shear lies in the range. */
-export function shareInside({ form, gradientPaM }: DuctState, wall: Wall, range: ShearRange): number {
-  return wall === 'floor'
-    ? floorShareInside(form, gradientPaM, range)
-    : sideShareInside(form, gradientPaM, range);
+/** Share (0 … 1) of a wall whose shear lies in the range; of an etched section's floor, of that alone. */
+export function shareInside(
+  { form, gradientPaM }: Pick<DuctState, 'form' | 'gradientPaM'>,
+  wall: Wall,
+  range: ShearRange,
+): number {
+  const [wallM, spanM] = wall === 'floor' ? [form.widthM, form.floorWidthM] : [form.depthM, form.depthM];
+  return wallShareInside(form, wallM, spanM, gradientPaM, range);
 }
 
 /** Volume (m³) of a length (m). */

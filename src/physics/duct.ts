@@ -76,29 +76,6 @@ export function ductForm(widthM: number, depthM: number): DuctForm {
   };
 }
 
-/**
- * Share (0 … 1) of the floor's width whose wall shear, without regard to sign, lies in the range; error below 1e-12.
- * Both ends carry a relative slack of 1e-12: in a flat duct the shear is the same to the last bits over most of the floor,
- * and a limit equal to it must not be decided by rounding.
- * With `spanM` the share of the middle part of that width (the true floor of an isotropic etch is as wide as its mask).
- */
-export function floorShareInside(
-  form: DuctForm,
-  gradientPaM: number,
-  range: ShearRange,
-  spanM: number = form.floorWidthM,
-): number {
-  if (!(spanM > 0 && spanM <= form.widthM)) {
-    throw new RangeError(`a span of the floor lies above 0 m and within ${form.widthM} m, not ${spanM}`);
-  }
-  return shareInside(form, form.widthM, gradientPaM, range, spanM);
-}
-
-/** The same share of the side's height. */
-export function sideShareInside(form: DuctForm, gradientPaM: number, range: ShearRange): number {
-  return shareInside(form, form.depthM, gradientPaM, range, form.depthM);
-}
-
 function refuseSides(widthM: number, depthM: number): void {
   for (const [name, side] of Object.entries({ width: widthM, depth: depthM })) {
     if (!(side > 0 && side < Infinity))
@@ -245,13 +222,22 @@ function onWalls(of: ShapeFactors, floorIsLong: boolean): DuctFactors {
 
 const SLACK = 1e-12;
 
-function shareInside(
+/**
+ * Share (0 … 1) of the middle of a wall (as wide as the duct, or as it is deep), `spanM` of it, whose shear, without regard
+ * to sign, lies in the range; error below 1e-12. Both ends carry a relative slack of 1e-12: in a flat duct the shear is the
+ * same to the last bits over most of the floor, and a limit equal to it must not be decided by rounding.
+ * @throws RangeError for a span that is not above 0 m and within the wall.
+ */
+export function wallShareInside(
   form: DuctForm,
   wallM: number,
+  spanM: number,
   gradientPaM: number,
   range: ShearRange,
-  spanM: number,
 ): number {
+  if (!(spanM > 0 && spanM <= wallM)) {
+    throw new RangeError(`a span of a wall lies above 0 m and within ${wallM} m, not ${spanM}`);
+  }
   const shortSide = Math.min(form.widthM, form.depthM);
   const scale = C_4_PI2 * Math.abs(gradientPaM) * shortSide;
   if (!(scale < Infinity))

@@ -1,20 +1,15 @@
 /**
  * Entrance length: how far from an inlet the profile is developed to 99 % on the axis.
  *
- * Source: R.-Y. Chen, J. Fluids Eng. 95 (1973) 153. Both forms tend to a constant as Re → 0, never to nought.
+ * Source: R.-Y. Chen, J. Fluids Eng. 95 (1973) 153. It tends to a constant as Re → 0, never to nought.
  */
 
 /**
  * Entrance length (m) of a duct by the tube form, D_h (0.6/(1 + 0.035 Re) + 0.056 Re). For a rectangle on its hydraulic
- * diameter this is the longer, so the safer, of the two forms.
+ * diameter this is longer, so safer, than his form for parallel plates.
  */
 export function entranceLength(reynolds: number, hydraulicDiameterM: number): number {
   return hydraulicDiameterM * (0.6 / (1 + 0.035 * reynolds) + 0.056 * reynolds);
-}
-
-/** Entrance length (m) between parallel plates, D_h (0.315/(1 + 0.0175 Re) + 0.011 Re), D_h twice the gap. */
-export function platesEntranceLength(reynolds: number, hydraulicDiameterM: number): number {
-  return hydraulicDiameterM * (0.315 / (1 + 0.0175 * reynolds) + 0.011 * reynolds);
 }
 
 /**

@@ -13,9 +13,8 @@ import { type Adjacency, adjacencyOf, type GraphPattern } from './pattern.ts';
 
 export interface Analysis {
   readonly nodeCount: number;
-  /** order[k] is the node eliminated k-th; place is its inverse. */
+  /** order[k] is the node eliminated k-th. */
   readonly order: Int32Array;
-  readonly place: Int32Array;
   readonly blockCount: number;
   /** Block b holds the columns firstColumn[b] … firstColumn[b + 1] − 1 (as places). */
   readonly firstColumn: Int32Array;
@@ -64,7 +63,6 @@ export function analyse(pattern: GraphPattern): Analysis {
   return {
     nodeCount,
     order,
-    place,
     blockCount,
     ...layout,
     edgeEntry: entriesOf(pattern, place, layout),

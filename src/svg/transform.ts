@@ -3,15 +3,17 @@
  * written alike: the attribute has plain numbers, the property has units and commas. A browser ignores what is written in
  * the other's way, and anything else that it cannot read. Here both are errors: the widths and places behind would be wrong.
  */
+import type { Specified } from './declarations.ts';
 import { parseLength, toUserUnits } from './lengths.ts';
 import { IDENTITY, multiply, translation } from './matrix.ts';
 import { NUMBER, toNumber } from './numbers.ts';
+import { ownKeyword } from './style.ts';
 import type { Matrix } from './types.ts';
 import { quoted, ValueError } from './value-error.ts';
 import type { Viewport } from './viewport.ts';
 
 /** Which of the two grammars a transform is written in. */
-export type TransformGrammar = 'attribute' | 'css';
+type TransformGrammar = 'attribute' | 'css';
 
 /**
  * @param viewport what percentages refer to.
@@ -42,10 +44,37 @@ export function parseTransform(text: string, grammar: TransformGrammar, viewport
 }
 
 /**
- * `transform-origin` as a point; the reference box is the viewport, as `transform-box: view-box` says.
- * @throws ValueError when it cannot be read.
+ * What an element says of its own: `transform` about `transform-origin` (CSS Transforms 1, 4).
+ * @param css what of `specified` comes from CSS, and so is written in its grammar.
+ * @throws ValueError for what cannot be read, and for the properties of CSS Transforms 2.
  */
-export function parseTransformOrigin(text: string, viewport: Viewport | null): readonly [number, number] {
+export function ownTransform(css: Specified, specified: Specified, viewport: Viewport | null): Matrix {
+  const text = specified?.get('transform') ?? 'none';
+  for (const property of ['translate', 'rotate', 'scale', 'zoom', 'offset-path']) {
+    const value = specified?.get(property);
+    if (value !== undefined && !/^(?:none|normal|initial|unset|1|100%)$/i.test(value)) {
+      throw new ValueError(
+        `the CSS property ${property}: ${quoted(value)} is not read; write it as transform`,
+      );
+    }
+  }
+  const matrix = parseTransform(
+    /^(?:initial|unset|revert|revert-layer)$/i.test(text) ? 'none' : text,
+    css?.has('transform') ? 'css' : 'attribute',
+    viewport,
+  );
+  const origin = specified?.get('transform-origin');
+  const box = ownKeyword(specified, 'transform-box', 'view-box');
+  if (text !== 'none' && box !== 'view-box') {
+    throw new ValueError(`transform-box: ${quoted(box)} is not read; write the transform without it`);
+  }
+  if (origin === undefined || text === 'none') return matrix;
+  const [x, y] = parseTransformOrigin(origin, viewport);
+  return multiply(multiply(translation(x, y), matrix), translation(-x, -y));
+}
+
+/** A point; the reference box is the viewport, as `transform-box: view-box` says. */
+function parseTransformOrigin(text: string, viewport: Viewport | null): readonly [number, number] {
   const parts = text.trim().toLowerCase().split(/\s+/);
   if (parts.length > 3) throw new ValueError(`transform-origin ${quoted(text)} has more than three values`);
   const [first, second = 'center'] = parts;

@@ -19,7 +19,7 @@ import {
   ownKeyword,
   resolveStyle,
 } from './style.ts';
-import { parseTransform, parseTransformOrigin } from './transform.ts';
+import { ownTransform } from './transform.ts';
 import { attribute, prefixedAttribute, type XmlElement } from './tree.ts';
 import { refuseEscapedTwins } from './twins.ts';
 import {
@@ -449,32 +449,6 @@ function refuseCssSize(css: Specified, ...names: readonly ('x' | 'y' | 'width' |
   if (given !== undefined) {
     throw new ValueError(`${given} in CSS is read by some programs only; write it as an attribute`);
   }
-}
-
-/** `transform` about `transform-origin` (CSS Transforms 1, 4). */
-function ownTransform(css: Specified, specified: Specified, viewport: Viewport | null): Matrix {
-  const text = specified?.get('transform') ?? 'none';
-  for (const property of ['translate', 'rotate', 'scale', 'zoom', 'offset-path']) {
-    const value = specified?.get(property);
-    if (value !== undefined && !/^(?:none|normal|initial|unset|1|100%)$/i.test(value)) {
-      throw new ValueError(
-        `the CSS property ${property}: ${quoted(value)} is not read; write it as transform`,
-      );
-    }
-  }
-  const matrix = parseTransform(
-    /^(?:initial|unset|revert|revert-layer)$/i.test(text) ? 'none' : text,
-    css?.has('transform') ? 'css' : 'attribute',
-    viewport,
-  );
-  const origin = specified?.get('transform-origin');
-  const box = ownKeyword(specified, 'transform-box', 'view-box');
-  if (text !== 'none' && box !== 'view-box') {
-    throw new ValueError(`transform-box: ${quoted(box)} is not read; write the transform without it`);
-  }
-  if (origin === undefined || text === 'none') return matrix;
-  const [x, y] = parseTransformOrigin(origin, viewport);
-  return multiply(multiply(translation(x, y), matrix), translation(-x, -y));
 }
 
 /** A length of a `use` or nested svg; null when not given or `auto`. */

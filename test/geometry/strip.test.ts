@@ -1,6 +1,12 @@
 import { describe, expect, it } from 'vitest';
 import { toPieces } from '../../src/geometry/pieces.ts';
-import { addStripStretches, coveredUpTo, isInPieceStrip, type StripEnds } from '../../src/geometry/strip.ts';
+import {
+  addStripStretches,
+  coveredUpTo,
+  isInPieceStrip,
+  lineTo,
+  type StripEnds,
+} from '../../src/geometry/strip.ts';
 import { chipOf } from '../network/chip-of.ts';
 import { randomFrom } from '../solve/graphs.ts';
 
@@ -17,7 +23,7 @@ const seam: StripEnds = { seam: Uint8Array.of(0, 0, 0, 1), seamWith: Int32Array.
 function stretches(piece: number, line: readonly number[], slackMm = 0, ends: StripEnds | null = null) {
   const into: number[] = [];
   const [ax, ay, bx, by] = line;
-  addStripStretches(into, pieces, piece, ax, ay, bx, by, slackMm, ends);
+  addStripStretches(into, pieces, piece, lineTo(ax, ay, bx, by), slackMm, ends);
   return into;
 }
 

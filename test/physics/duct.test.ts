@@ -1,9 +1,9 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import type { DuctFactors } from '../../src/physics/duct.ts';
-import { ductForm, floorShareInside, sideShareInside } from '../../src/physics/duct.ts';
+import { ductForm } from '../../src/physics/duct.ts';
 import { exactDuct, exactLongWallShear } from './exact-duct-series.ts';
-import { floorShearAt, sideShearAt } from './wall-shear.ts';
+import { floorShareInside, floorShearAt, sideShareInside, sideShearAt } from './wall-shear.ts';
 
 const ASPECTS = [1, 1.0001, 1.1, 1.5, 2, Math.PI, 5, 10, 31.7, 100, 1000, 1e4];
 const NAMES: readonly (keyof DuctFactors)[] = [

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
-import { ductForm, floorShareInside } from '../../src/physics/duct.ts';
+import { ductForm } from '../../src/physics/duct.ts';
 import { isotropicFloorMean, isotropicSection, sectionForm } from '../../src/physics/section.ts';
+import { floorShareInside } from './wall-shear.ts';
 
 describe('shape factors of a profile', () => {
   const mask = 100e-6;

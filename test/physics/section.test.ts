@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
-import { ductForm, floorShareInside } from '../../src/physics/duct.ts';
+import { ductForm } from '../../src/physics/duct.ts';
 import { isotropicFloorMean, isotropicSection } from '../../src/physics/section.ts';
-import { floorShearAt } from './wall-shear.ts';
+import { floorShareInside, floorShearAt } from './wall-shear.ts';
 
 describe('an isotropic etch', () => {
   it('keeps area and perimeter: mask·h + πh²/2, and walls at mask + 2h', () => {
@@ -24,12 +24,15 @@ describe('an isotropic etch', () => {
   it('has a share of its floor inside a range that is counted over the mask’s width alone', () => {
     const mask = 2;
     const form = ductForm(isotropicSection(mask, 1).ductWidthM, 1);
+    const etched = { ...form, floorWidthM: mask };
     const atEdge = floorShearAt(form, 1, mask / 2);
-    expect(floorShareInside(form, 1, { minPa: atEdge * 0.99, maxPa: null }, mask)).toBe(1);
-    expect(floorShareInside(form, 1, { minPa: null, maxPa: atEdge * 0.99 }, mask)).toBe(0);
+    expect(floorShareInside(etched, 1, { minPa: atEdge * 0.99, maxPa: null })).toBe(1);
+    expect(floorShareInside(etched, 1, { minPa: null, maxPa: atEdge * 0.99 })).toBe(0);
     const halfway = floorShearAt(form, 1, mask / 4);
-    expect(floorShareInside(form, 1, { minPa: halfway, maxPa: null }, mask)).toBeCloseTo(0.5, 10);
-    expect(() => floorShareInside(form, 1, { minPa: 0, maxPa: null }, 9)).toThrow(/span of the floor/);
+    expect(floorShareInside(etched, 1, { minPa: halfway, maxPa: null })).toBeCloseTo(0.5, 10);
+    expect(() => floorShareInside({ ...form, floorWidthM: 9 }, 1, { minPa: 0, maxPa: null })).toThrow(
+      /span of a wall/,
+    );
   });
 
   it('is refused without a mask opening or a depth', () => {

@@ -1,4 +1,5 @@
-import type { DuctForm } from '../../src/physics/duct.ts';
+import type { DuctForm, ShearRange } from '../../src/physics/duct.ts';
+import { shareInside } from '../../src/physics/duct-state.ts';
 import { longWallProfile, shortWallProfile } from '../../src/physics/wall-profile.ts';
 
 /** Wall shear (Pa) on the floor at y (m) from its middle, |y| ≤ width/2, at a pressure gradient (Pa/m), with its sign. */
@@ -23,4 +24,13 @@ function shearAt(
   const profile = wallM === shortSide && aspect > 1 ? shortWallProfile(aspect) : longWallProfile(aspect);
   const fromCornerM = wallM / 2 - Math.abs(fromMiddleM);
   return (4 / Math.PI ** 2) * gradientPaM * shortSide * profile.at((Math.PI * fromCornerM) / shortSide).value;
+}
+
+/** Share of the floor inside a range, as the product asks for it. */
+export function floorShareInside(form: DuctForm, gradientPaM: number, range: ShearRange): number {
+  return shareInside({ form, gradientPaM }, 'floor', range);
+}
+
+export function sideShareInside(form: DuctForm, gradientPaM: number, range: ShearRange): number {
+  return shareInside({ form, gradientPaM }, 'side', range);
 }

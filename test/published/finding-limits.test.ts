@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { minWallM, resolveLeastWall, resolveLimits } from '../../src/chip/limits.ts';
 import { NEAR_VACUUM_PA } from '../../src/findings/pressure.ts';
-import { CURVED_FLOW_DEAN, curvedFrictionFactor } from '../../src/physics/dean.ts';
+import { CURVED_FLOW_DEAN } from '../../src/physics/dean.ts';
 import { meanRoofRise } from '../../src/physics/roof.ts';
 import { isotropicSection } from '../../src/physics/section.ts';
 import { parseRunSheet } from '../../src/runsheet/parse.ts';
@@ -55,10 +55,13 @@ describe('usual limits that have a source', () => {
 
 describe('limits of the flow itself', () => {
   it('calls flow curved from the Dean number at which friction in a coil begins to rise', () => {
-    // C. M. White, Proc. R. Soc. A 123 (1929) 645 (constants seen).
+    // C. M. White, Proc. R. Soc. A 123 (1929) 645 (constants seen): friction over that of a straight tube.
+    const friction = (dean: number): number =>
+      1 / (1 - (1 - (CURVED_FLOW_DEAN / dean) ** 0.45) ** (1 / 0.45));
     expect(CURVED_FLOW_DEAN).toBe(11.6);
-    expect(curvedFrictionFactor(CURVED_FLOW_DEAN)).toBe(1);
-    expect(curvedFrictionFactor(15)).toBeCloseTo(1.007348042, 8);
+    expect(friction(CURVED_FLOW_DEAN)).toBe(1);
+    expect(friction(15)).toBeCloseTo(1.007348042, 8);
+    expect(friction(50)).toBeCloseTo(1.245935755, 8);
   });
 
   it('calls a pressure near vacuum where water at body temperature boils', () => {
