@@ -58,8 +58,7 @@ export function paintField(
   doc
     .rect(left, top, right - left, bottom - top)
     .lineWidth(lineWidth)
-    .strokeColor(INK)
-    .stroke();
+    .stroke(INK);
 }
 
 /** Lines at what is asked; an open end has none. */
@@ -71,7 +70,7 @@ export function paintEnds(
 ): void {
   for (const end of [min, max]) {
     if (end === null) continue;
-    doc.moveTo(toX(end), top).lineTo(toX(end), bottom).lineWidth(lineWidth).strokeColor(BAND_EDGE).stroke();
+    doc.moveTo(toX(end), top).lineTo(toX(end), bottom).lineWidth(lineWidth).stroke(BAND_EDGE);
   }
 }
 
@@ -85,5 +84,5 @@ export function paintTick(
   lineWidth: number,
 ): void {
   doc.moveTo(x, y).lineTo(x + dx, y + dy);
-  doc.lineWidth(lineWidth).strokeColor(INK).stroke();
+  doc.lineWidth(lineWidth).stroke(INK);
 }

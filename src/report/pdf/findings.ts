@@ -2,6 +2,7 @@ import type { Finding } from '../../findings/types.ts';
 import { countText } from '../../findings/words.ts';
 import { formatMm, measureText } from '../../runsheet/shown.ts';
 import { figures, words } from '../columns.ts';
+import { FINDING_COLOUR } from '../map-types.ts';
 import { drawPlace, type PlaceDrawing } from '../place.ts';
 import { verdictLine } from '../verdict-line.ts';
 import { BODY, BODY_BOLD, type PageContext, SMALL } from './context.ts';
@@ -124,23 +125,21 @@ function paintPlace(paper: Paper, picture: PlaceDrawing, x: number, y: number): 
     paintMark(doc, picture);
     doc.restore();
     paintScaleBar(paper, picture.scaleBar);
-    doc.rect(0, 0, picture.widthMm, picture.viewHeightMm).lineWidth(0.2).strokeColor('#888888').stroke();
+    doc.rect(0, 0, picture.widthMm, picture.viewHeightMm).lineWidth(0.2).stroke('#888888');
   });
   for (const label of picture.labels) paintLabel(paper, label, x, y);
   paintScaleText(paper, picture.scaleBar, x, y, 0.7);
 }
 
-const MARK_COLOUR = '#b00020';
-
 function paintMark(doc: PDFKit.PDFDocument, { mark, cross: [x, y] }: PlaceDrawing): void {
   if (mark === null) {
-    doc.circle(x, y, 1.1).lineWidth(0.35).strokeColor(MARK_COLOUR).stroke();
+    doc.circle(x, y, 1.1).lineWidth(0.35).stroke(FINDING_COLOUR);
     doc
       .moveTo(x - 1.8, y)
       .lineTo(x + 1.8, y)
       .moveTo(x, y - 1.8)
       .lineTo(x, y + 1.8);
-    doc.lineWidth(0.2).strokeColor(MARK_COLOUR).stroke();
+    doc.lineWidth(0.2).stroke(FINDING_COLOUR);
     return;
   }
   const [x1, y1, x2, y2] = mark;
@@ -153,7 +152,7 @@ function paintMark(doc: PDFKit.PDFDocument, { mark, cross: [x, y] }: PlaceDrawin
   ]) {
     doc.moveTo(ex - nx, ey - ny).lineTo(ex + nx, ey + ny);
   }
-  doc.lineWidth(0.35).strokeColor(MARK_COLOUR).stroke();
+  doc.lineWidth(0.35).stroke(FINDING_COLOUR);
 }
 
 function writeFurther({ one }: PageContext, section: Section, findings: readonly Finding[]): void {

@@ -45,8 +45,7 @@ export function writeFoundBox(section: Section, cases: readonly ReportedCase[]):
     paper.doc
       .rect(paper.left, top, paper.width, paper.y - top)
       .lineWidth(1)
-      .strokeColor(EDGE)
-      .stroke();
+      .stroke(EDGE);
   });
   paper.y += 4;
 }

@@ -258,7 +258,7 @@ export class Paper {
 
   rule(y: number, from = this.left, to = this.right, colour = '#888888', thickness = 0.4): void {
     this.decoration(() => {
-      this.doc.moveTo(from, y).lineTo(to, y).lineWidth(thickness).strokeColor(colour).stroke();
+      this.doc.moveTo(from, y).lineTo(to, y).lineWidth(thickness).stroke(colour);
     });
   }
 

@@ -84,8 +84,7 @@ function paintCurve(paper: Paper, curve: PumpCurve, x: number, y: number, width:
   paper.put(paper.clip(curve.title, width, TITLE), x, y, TITLE);
   paintField(paper, field, 0.5, () => paintCurves(paper, curve, field, toY));
   const [value, setting] = curve.found;
-  if (Number.isFinite(value))
-    doc.circle(toX(value), toY(setting), 2.6).lineWidth(1.1).strokeColor(INK).stroke();
+  if (Number.isFinite(value)) doc.circle(toX(value), toY(setting), 2.6).lineWidth(1.1).stroke(INK);
   for (const { at, text } of curve.x.ticks) {
     paintTick(paper, toX(at), bottom, 0, 2.5, 0.5);
     paper.putCentred(text, toX(at), bottom + 3.2, LABEL);
@@ -125,18 +124,12 @@ function paintCurves(paper: Paper, curve: PumpCurve, field: Field, toY: (setting
     paintEnds(paper, field, window, 0.5);
   }
   for (const { at } of curve.limits) {
-    doc
-      .moveTo(left, toY(at))
-      .lineTo(right, toY(at))
-      .dash(3, { space: 2 })
-      .lineWidth(0.7)
-      .strokeColor(LIMIT)
-      .stroke();
+    doc.moveTo(left, toY(at)).lineTo(right, toY(at)).dash(3, { space: 2 }).lineWidth(0.7).stroke(LIMIT);
     doc.undash();
   }
   for (const run of curve.runs) {
     doc.moveTo(toX(run[0][0]), toY(run[0][1]));
     for (const [value, setting] of run.slice(1)) doc.lineTo(toX(value), toY(setting));
-    doc.lineWidth(1.1).lineJoin('round').strokeColor(CURVE).stroke();
+    doc.lineWidth(1.1).lineJoin('round').stroke(CURVE);
   }
 }

@@ -113,5 +113,7 @@ function groupText(
   const isGroup = (reach: number): boolean =>
     hasWindow(run.channels[network.reachChannel[reach]]) || network.channelReachCount[reach] > 1;
   if (!isGroup(order[i]) && (i === 0 || !isGroup(order[i - 1]))) return null;
-  return [`${row.channel}, layer ${row.layer}`, ...windowTexts(run.channels[channel], show)].join('; ');
+  return [`${row.channel}, layer ${row.layer ?? '(none)'}`, ...windowTexts(run.channels[channel], show)].join(
+    '; ',
+  );
 }

@@ -214,10 +214,10 @@ function paintBars(paper: Paper, chart: DistributionChart, field: Field): void {
     if (i === 0) doc.moveTo(at, toY(height));
     else doc.lineTo(at, toY(height));
   });
-  if (chart.curve.length > 0) doc.lineWidth(0.9).lineJoin('round').strokeColor(CURVE).stroke();
+  if (chart.curve.length > 0) doc.lineWidth(0.9).lineJoin('round').stroke(CURVE);
   paintEnds(paper, field, chart.window, 0.8);
   doc.moveTo(toX(chart.nominal), top).lineTo(toX(chart.nominal), bottom).dash(2, { space: 2 });
-  doc.lineWidth(0.7).strokeColor(INK).stroke().undash();
+  doc.lineWidth(0.7).stroke(INK).undash();
 }
 
 /* ---------- numbers ---------- */
