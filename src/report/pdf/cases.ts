@@ -121,8 +121,7 @@ function writeTable(section: Section, cases: readonly ReportedCase[]): void {
     ],
     { size: 7, group: ({ group }) => group, isBold: (one) => one === verdict },
   );
-  if (more > 0)
-    section.paragraph(`… and ${more} more reaches with a window: see the tables of reaches.`, SMALL);
+  section.more(more, 'more reaches with a window: see the tables of reaches.');
 }
 
 const PORTS = 'Ports: condition; pressure at the pump; flow into the chip';

@@ -5,6 +5,8 @@ import type { Section } from './section.ts';
 export const INK = '#222222';
 export const TITLE: TextStyle = { size: 7, weight: 'bold' };
 export const LABEL: TextStyle = { size: 6.2 };
+/** Bars and curves of what was computed. */
+export const DARK = '#1b4965';
 export const BAND_EDGE = '#5c8a48';
 export const BAND = '#dcebd5';
 

@@ -11,20 +11,12 @@ import { writeHandCheck } from './hand-check.ts';
 import { writeHoles } from './holes.ts';
 import { writeMaps } from './maps.ts';
 import { writeModel } from './model.ts';
-import { type Fonts, Paper, type PaperSize } from './paper.ts';
+import { Paper, type PdfOptions } from './paper.ts';
 import { writePump } from './pump.ts';
 import { writeReaches } from './reaches.ts';
 import { writeRunSheet } from './run-sheet.ts';
 import { writeSegments } from './segments.ts';
 import { writeSpread } from './spread.ts';
-
-export interface PdfOptions {
-  /** The embedded font's files (TrueType), with every glyph that the pages use. */
-  readonly fonts: Fonts;
-  readonly paper: PaperSize;
-  /** The one clock: printed, and the document's creation date. */
-  readonly date: Date;
-}
 
 /**
  * The document to sign: PDF 1.7, tagged, one embedded font. The same report, options and Node version give the same bytes.
@@ -35,12 +27,8 @@ export function writePdf(report: Report, options: PdfOptions): Promise<Uint8Arra
   const { sheet } = cases[0].run;
   const creator = `${result.tool.name} ${result.tool.version}`;
   const title = sheet?.title ?? result.layout.file;
-  const paper = new Paper({
-    ...options,
-    title,
-    subject: `${subjectOf(cases)} of ${result.layout.file}`,
-    creator,
-  });
+  const subject = `${subjectOf(cases)} of ${result.layout.file}`;
+  const paper = new Paper(options, { title, subject, creator });
   const contexts = cases.map((one) => pageContext(paper, report, one, options.date));
   writeCases(contexts);
   for (const context of contexts) {

@@ -6,6 +6,7 @@ import { ofCase } from '../report.ts';
 import {
   BAND,
   BAND_EDGE,
+  DARK,
   type Field,
   fieldOf,
   INK,
@@ -44,8 +45,7 @@ export function writePump({ paper, one }: PageContext): void {
   }
   const curves = pump.targets.slice(0, MOST_CURVES).map((target) => pumpCurve(one, target, show));
   writeCurves(section, curves);
-  const more = pump.targets.length - MOST_CURVES;
-  if (more > 0) section.paragraph(`… and ${more} more targets, in the tables above.`, SMALL);
+  section.more(pump.targets.length - MOST_CURVES, 'more targets, in the tables above.');
 }
 
 const LEGEND =
@@ -67,7 +67,6 @@ function writeCurves(section: Section, curves: readonly PumpCurve[]): void {
   );
 }
 
-const CURVE = '#1b4965';
 const LIMIT = '#b00020';
 const MARGINS = { left: 40, right: 6, top: 13, bottom: 25 } as const;
 
@@ -130,6 +129,6 @@ function paintCurves(paper: Paper, curve: PumpCurve, field: Field, toY: (setting
   for (const run of curve.runs) {
     doc.moveTo(toX(run[0][0]), toY(run[0][1]));
     for (const [value, setting] of run.slice(1)) doc.lineTo(toX(value), toY(setting));
-    doc.lineWidth(1.1).lineJoin('round').stroke(CURVE);
+    doc.lineWidth(1.1).lineJoin('round').stroke(DARK);
   }
 }

@@ -35,13 +35,10 @@ export function writeReaches({ paper, one }: PageContext): void {
       isBold: (row) => outside(row.channel, row.name),
     },
   );
-  const more = network.reachCount - rows.length;
-  if (more > 0) {
-    section.paragraph(
-      `… and ${more} more of ${countText(network.reachCount, 'reach', 'reaches')}: all are in the CSV (--formats csv) and JSON (--formats json) files.`,
-      SMALL,
-    );
-  }
+  section.more(
+    network.reachCount - rows.length,
+    `more of ${countText(network.reachCount, 'reach', 'reaches')}: all are in the CSV (--formats csv) and JSON (--formats json) files.`,
+  );
 }
 
 const LEGEND =
