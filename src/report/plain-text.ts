@@ -10,6 +10,11 @@ export function cleanText(text: string): string {
     .replace(/\p{Variation_Selector}/gu, '');
 }
 
+/** The parts that there are, in one text. */
+export function joined(parts: readonly (string | null)[], separator: string): string {
+  return parts.filter(Boolean).join(separator);
+}
+
 /** Columns that a text takes in a terminal: 2 for wide East Asian characters and emoji, 0 for combining marks. */
 export function displayWidth(text: string): number {
   let width = 0;

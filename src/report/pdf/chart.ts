@@ -75,16 +75,3 @@ export function paintEnds(
     doc.moveTo(toX(end), top).lineTo(toX(end), bottom).lineWidth(lineWidth).stroke(BAND_EDGE);
   }
 }
-
-/** A short line at the edge of the field. */
-export function paintTick(
-  { doc }: Paper,
-  x: number,
-  y: number,
-  dx: number,
-  dy: number,
-  lineWidth: number,
-): void {
-  doc.moveTo(x, y).lineTo(x + dx, y + dy);
-  doc.lineWidth(lineWidth).stroke(INK);
-}

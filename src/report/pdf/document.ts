@@ -1,3 +1,4 @@
+import { joined } from '../plain-text.ts';
 import { AT_FOUND_SETTINGS } from '../pump-rows.ts';
 import type { Report } from '../report.ts';
 import { casesLine, verdictLine } from '../verdict-line.ts';
@@ -70,5 +71,5 @@ function headLine(report: Report, title: string): string {
   const drawing = sheet === null ? '' : drawingText(sheet.drawing);
   const verdict = 'cases' in result ? casesLine(report) : verdictLine(result.verdict, result.counts);
   const settings = cases.some(({ pump }) => pump !== undefined) ? AT_FOUND_SETTINGS : '';
-  return [title, drawing, verdict, settings].filter((part) => part !== '').join('  ·  ');
+  return joined([title, drawing, verdict, settings], '  ·  ');
 }

@@ -13,6 +13,7 @@ import {
 import { SMALL } from './context.ts';
 import { type Paper, POINTS_PER_MM } from './paper.ts';
 import type { Section } from './section.ts';
+import { trace } from './trace.ts';
 
 /** Paints a map over the page's width as a tagged figure, what must be said of it below; its texts were measured in the paper's font. */
 export function writeMap(section: Section, drawing: MapDrawing, alt: string, more = ''): void {
@@ -81,11 +82,6 @@ export function paintStrokes({ doc }: Paper, strokes: readonly MapStroke[]): voi
   doc.lineCap('butt');
 }
 
-function trace(doc: PDFKit.PDFDocument, points: readonly number[]): void {
-  doc.moveTo(points[0], points[1]);
-  for (let i = 2; i < points.length; i += 2) doc.lineTo(points[i], points[i + 1]);
-}
-
 function paintHoles({ doc }: Paper, { holes }: MapDrawing): void {
   for (const { x, y, radiusMm } of holes) {
     doc.circle(x, y, Math.max(radiusMm, 0.3)).lineWidth(0.25).fillAndStroke('#ffffff', '#202020');
@@ -127,19 +123,14 @@ function paintLegend({ doc }: Paper, { legend }: MapDrawing): void {
   colours.forEach((colour, i) => {
     doc.rect(bar.x + i * step, bar.y, step + (i + 1 < colours.length ? 0.1 : 0), bar.height).fill(colour);
   });
-  for (const { x } of ticks) {
-    doc.moveTo(x, bar.y + bar.height).lineTo(x, bar.y + bar.height + 0.6);
-  }
+  for (const { x } of ticks) trace(doc, [x, bar.y + bar.height, x, bar.y + bar.height + 0.6]);
   doc.lineWidth(0.15).stroke('#000000');
 }
 
 export function paintScaleBar({ doc }: Paper, { x, y, lengthMm }: ScaleBar): void {
-  doc
-    .moveTo(x, y - 0.6)
-    .lineTo(x, y + 0.6)
-    .moveTo(x, y)
-    .lineTo(x + lengthMm, y);
-  doc.moveTo(x + lengthMm, y - 0.6).lineTo(x + lengthMm, y + 0.6);
+  trace(doc, [x, y - 0.6, x, y + 0.6]);
+  trace(doc, [x, y, x + lengthMm, y]);
+  trace(doc, [x + lengthMm, y - 0.6, x + lengthMm, y + 0.6]);
   doc.lineWidth(0.35).stroke('#000000');
 }
 

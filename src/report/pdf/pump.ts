@@ -13,13 +13,13 @@ import {
   LABEL,
   paintEnds,
   paintField,
-  paintTick,
   TITLE,
   writeCharts,
 } from './chart.ts';
 import { type PageContext, SMALL } from './context.ts';
 import type { Paper } from './paper.ts';
 import { chapter, type Section } from './section.ts';
+import { trace } from './trace.ts';
 
 /** Curves drawn; of more targets the tables tell. */
 const MOST_CURVES = 24;
@@ -85,16 +85,17 @@ function paintCurve(paper: Paper, curve: PumpCurve, x: number, y: number, width:
   const [value, setting] = curve.found;
   if (Number.isFinite(value)) doc.circle(toX(value), toY(setting), 2.6).lineWidth(1.1).stroke(INK);
   for (const { at, text } of curve.x.ticks) {
-    paintTick(paper, toX(at), bottom, 0, 2.5, 0.5);
+    trace(doc, [toX(at), bottom, toX(at), bottom + 2.5]);
+    doc.lineWidth(0.5).stroke(INK);
     paper.putCentred(text, toX(at), bottom + 3.2, LABEL);
   }
   for (const { at, text } of curve.y.ticks) {
-    paintTick(paper, left - 2.5, toY(at), 2.5, 0, 0.5);
+    trace(doc, [left - 2.5, toY(at), left, toY(at)]);
+    doc.lineWidth(0.5).stroke(INK);
     paper.putRight(text, left - 4, toY(at) - 3.8, LABEL);
   }
-  curve.windows.forEach(({ text }, i) => {
+  curve.windows.forEach(({ text, window }, i) => {
     const style = { ...LABEL, colour: BAND_EDGE };
-    const { window } = curve.windows[i];
     const from = Math.max(left, window.min === null ? left : toX(window.min));
     paper.put(paper.clip(text, right - from - 6, style), from + 3, top + 2 + 8 * i, style);
   });
@@ -127,8 +128,8 @@ function paintCurves(paper: Paper, curve: PumpCurve, field: Field, toY: (setting
     doc.undash();
   }
   for (const run of curve.runs) {
-    doc.moveTo(toX(run[0][0]), toY(run[0][1]));
-    for (const [value, setting] of run.slice(1)) doc.lineTo(toX(value), toY(setting));
+    const points = run.flatMap(([value, setting]) => [toX(value), toY(setting)]);
+    trace(doc, points);
     doc.lineWidth(1.1).lineJoin('round').stroke(DARK);
   }
 }

@@ -10,13 +10,13 @@ import {
   LABEL,
   paintEnds,
   paintField,
-  paintTick,
   TITLE,
   writeCharts,
 } from './chart.ts';
 import { SMALL } from './context.ts';
 import type { Paper } from './paper.ts';
 import type { Section } from './section.ts';
+import { trace } from './trace.ts';
 
 const MOST_CHARTS = 24;
 const CURVE = '#b05a00';
@@ -81,7 +81,8 @@ function paintDistribution(
   paintField(paper, field, 0.4, () => paintBars(paper, chart, field));
   const unitLeft = right - paper.widthOf(chart.unit, LABEL);
   for (const { at, text } of chart.ticks) {
-    paintTick(paper, field.toX(at), bottom, 0, 2, 0.4);
+    trace(paper.doc, [field.toX(at), bottom, field.toX(at), bottom + 2]);
+    paper.doc.lineWidth(0.4).stroke(INK);
     const textWidth = paper.widthOf(text, LABEL);
     const textLeft = field.toX(at) - textWidth / 2;
     // the unit stands at the end of the axis
@@ -104,12 +105,14 @@ function paintBars(paper: Paper, chart: DistributionChart, field: Field): void {
     if (height > 0) doc.rect(left + i * bar, toY(height), bar * 0.92, bottom - toY(height));
   });
   doc.fillOpacity(0.75).fill(DARK).fillOpacity(1);
-  chart.curve.forEach((height, i) => {
-    const at = left + ((right - left) * i) / (chart.curve.length - 1);
-    if (i === 0) doc.moveTo(at, toY(height));
-    else doc.lineTo(at, toY(height));
-  });
-  if (chart.curve.length > 0) doc.lineWidth(0.9).lineJoin('round').stroke(CURVE);
+  if (chart.curve.length > 0) {
+    const toCurveX = (i: number): number => left + ((right - left) * i) / (chart.curve.length - 1);
+    trace(
+      doc,
+      [...chart.curve].flatMap((height, i) => [toCurveX(i), toY(height)]),
+    );
+    doc.lineWidth(0.9).lineJoin('round').stroke(CURVE);
+  }
   paintEnds(paper, field, chart.window, 0.8);
   doc.moveTo(toX(chart.nominal), top).lineTo(toX(chart.nominal), bottom).dash(2, { space: 2 });
   doc.lineWidth(0.7).stroke(INK).undash();
