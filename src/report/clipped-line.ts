@@ -26,7 +26,7 @@ export function clippedLine(points: readonly number[], box: Box): number[][] {
 }
 
 /** From where to where, as shares, a line lies inside a box; null where it does not. */
-export function stretchInside([x, y, x2, y2]: Line, box: Box): readonly [number, number] | null {
+function stretchInside([x, y, x2, y2]: Line, box: Box): readonly [number, number] | null {
   const [dx, dy] = [x2 - x, y2 - y];
   let from = 0;
   let to = 1;

@@ -1,6 +1,5 @@
 import type { Finding } from '../findings/types.ts';
 import { formatNumber } from '../runsheet/shown.ts';
-import { stretchInside } from './clipped-line.ts';
 import { niceStep } from './colour-scale.ts';
 import { type LabelWish, placeLabels } from './label-placement.ts';
 import { labelWish, shortName } from './label-wish.ts';
@@ -200,9 +199,22 @@ function longestPieces(
   return new Map([...best].map(([channel, { piece }]) => [channel, piece]));
 }
 
-/** From where to where, as shares, a piece lies inside the view; its middle twice when it lies outside. */
-function visibleShare(line: Line, view: Box): readonly [number, number] {
-  return stretchInside(line, view) ?? [0.5, 0.5];
+/**
+ * Liang–Barsky: from where to where, as shares, a piece lies inside the view; its middle twice when it lies outside. Level and
+ * upright pieces just beside the view count as inside: a strip that shows is named though its centreline does not show.
+ */
+function visibleShare([x1, y1, x2, y2]: Line, view: Box): readonly [number, number] {
+  let [from, to] = [0, 1];
+  for (const [start, delta, low, high] of [
+    [x1, x2 - x1, view.x, view.x + view.width],
+    [y1, y2 - y1, view.y, view.y + view.height],
+  ]) {
+    if (delta === 0) continue;
+    const [a, b] = [(low - start) / delta, (high - start) / delta];
+    from = Math.max(from, Math.min(a, b));
+    to = Math.min(to, Math.max(a, b));
+  }
+  return from > to ? [0.5, 0.5] : [from, to];
 }
 
 /** Points of a piece inside the view, in paper mm: the middle of what shows, then its quarters. */
