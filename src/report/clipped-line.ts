@@ -1,4 +1,4 @@
-import type { Box } from './map-geometry.ts';
+import type { Box, Line } from './map-geometry.ts';
 
 /**
  * The parts of a polyline (x0 y0 x1 y1 …) that lie in a box, each a polyline again.
@@ -9,7 +9,7 @@ export function clippedLine(points: readonly number[], box: Box): number[][] {
   let part: number[] | null = null;
   for (let i = 0; i + 3 < points.length; i += 2) {
     const [x1, y1, x2, y2] = [points[i], points[i + 1], points[i + 2], points[i + 3]];
-    const inside = stretchInside(x1, y1, x2 - x1, y2 - y1, box);
+    const inside = stretchInside([x1, y1, x2, y2], box);
     if (inside === null) {
       part = null;
       continue;
@@ -25,13 +25,9 @@ export function clippedLine(points: readonly number[], box: Box): number[][] {
   return parts;
 }
 
-function stretchInside(
-  x: number,
-  y: number,
-  dx: number,
-  dy: number,
-  box: Box,
-): readonly [number, number] | null {
+/** From where to where, as shares, a line lies inside a box; null where it does not. */
+function stretchInside([x, y, x2, y2]: Line, box: Box): readonly [number, number] | null {
+  const [dx, dy] = [x2 - x, y2 - y];
   let from = 0;
   let to = 1;
   for (const [slope, room] of [

@@ -1,5 +1,5 @@
 import type { PaperFrame } from './map-frame.ts';
-import { type Box, type ChipGeometry, segmentTouchesBox, stripHalfWidthMm } from './map-geometry.ts';
+import { type Box, type ChipGeometry, type Line, lineTouchesBox, stripHalfWidthMm } from './map-geometry.ts';
 import type { MapHole, MapLabel } from './map-types.ts';
 
 /** A text that wants a place near one of its anchors; paper millimetres. */
@@ -82,13 +82,11 @@ function placeShortening(wish: LabelWish, around: Surroundings): MapLabel | unde
   return undefined;
 }
 
-type Line = readonly [number, number, number, number];
-
 function placeOne(wish: LabelWish, { ground, taken, leaders, crossing }: Surroundings): MapLabel | undefined {
   const { kind, text, sizeMm } = wish;
   const heightMm = 1.25 * sizeMm;
   const onLine = (box: Box, lines: readonly Line[]): boolean =>
-    lines.some(([x1, y1, x2, y2]) => segmentTouchesBox(x1, y1, x2, y2, 0.2, box));
+    lines.some((line) => lineTouchesBox(line, 0.2, box));
   for (const distance of DISTANCES_MM) {
     for (const anchor of wish.anchors) {
       for (const [dx, dy] of DIRECTIONS) {
@@ -103,7 +101,7 @@ function placeOne(wish: LabelWish, { ground, taken, leaders, crossing }: Surroun
         if (onLine(box, ground.lines) || onLine(box, leaders)) continue;
         if (touchesChannel(box, ground)) continue;
         const leader = distance === 0 ? null : leaderTo(box, anchor.x, anchor.y);
-        if (leader !== null && taken.some((other) => crosses(leader, other, anchor))) continue;
+        if (leader !== null && taken.some((other) => crosses(leader, other))) continue;
         if (leader !== null && crossing === 'none') {
           if (leaders.some((other) => linesCross(leader, other))) continue;
           if (crossesChannel(leader, anchor.clear, ground)) continue;
@@ -150,8 +148,7 @@ function touchesChannel(box: Box, ground: LabelGround): boolean {
   return geometry.anyPiece(searched, (piece) => {
     const channel = geometry.chip.channels[geometry.pieceChannel[piece]];
     const reach = Math.max(stripHalfWidthMm(channel), leastHalfWidthMm / frame.scale) + 0.15 / frame.scale;
-    const [x1, y1, x2, y2] = geometry.pieces.subarray(4 * piece, 4 * piece + 4);
-    return segmentTouchesBox(x1, y1, x2, y2, reach, exact);
+    return lineTouchesBox(geometry.pieceLine(piece), reach, exact);
   });
 }
 
@@ -163,14 +160,10 @@ function leaderTo(box: Box, x: number, y: number): Line {
 }
 
 /** Whether a leader runs through a box that is not the one its anchor lies in (its own hole). */
-function crosses(
-  [x1, y1, x2, y2]: Line,
-  box: Box,
-  anchor: { readonly x: number; readonly y: number },
-): boolean {
-  const own =
-    anchor.x >= box.x && anchor.x <= box.x + box.width && anchor.y >= box.y && anchor.y <= box.y + box.height;
-  return !own && segmentTouchesBox(x1, y1, x2, y2, 0.1, box);
+function crosses(leader: Line, box: Box): boolean {
+  const [, , x, y] = leader;
+  const own = x >= box.x && x <= box.x + box.width && y >= box.y && y <= box.y + box.height;
+  return !own && lineTouchesBox(leader, 0.1, box);
 }
 
 function linesCross([ax, ay, bx, by]: Line, [cx, cy, dx, dy]: Line): boolean {

@@ -9,6 +9,9 @@ export interface Box {
   readonly height: number;
 }
 
+/** A straight line, x1 y1 x2 y2, mm; in the drawing's frame or on paper, as the holder says. */
+export type Line = readonly [number, number, number, number];
+
 /**
  * The straight pieces of all channels' centrelines with one index over their strips, in drawing millimetres. Built once per chip and
  * shared by all its maps and close-ups.
@@ -17,14 +20,13 @@ export interface ChipGeometry {
   readonly chip: Chip;
   /** What the maps must hold: strips, holes and the chip edge; all that is drawn where no channel was read. */
   readonly bounds: Box;
-  readonly pieceCount: number;
-  /** x1 y1 x2 y2 of each piece. */
-  readonly pieces: Float64Array;
   /** Channel of each piece. */
   readonly pieceChannel: Int32Array;
   /** Calls back with pieces whose strip touches the box; stops at the first `true`. Answers whether one did. */
   readonly anyPiece: (box: Box, accept: (piece: number) => boolean) => boolean;
   readonly piecesIn: (box: Box) => readonly number[];
+  /** A piece from end to end. */
+  readonly pieceLine: (piece: number) => Line;
 }
 
 export function chipGeometry(chip: Chip): ChipGeometry {
@@ -65,8 +67,12 @@ export function chipGeometry(chip: Chip): ChipGeometry {
   return {
     chip,
     bounds: bounds.box(),
-    pieceCount,
-    pieces,
+    pieceLine: (piece) => [
+      pieces[4 * piece],
+      pieces[4 * piece + 1],
+      pieces[4 * piece + 2],
+      pieces[4 * piece + 3],
+    ],
     pieceChannel,
     anyPiece: (box, accept) =>
       index?.collides(box.x, box.y, box.x + box.width, box.y + box.height, accept) ?? false,
@@ -109,16 +115,9 @@ class Bounds {
   }
 }
 
-/** Whether the segment from (x1, y1) to (x2, y2), `reach` wide to each side, touches the box (its bevelled corners taken as square). */
-export function segmentTouchesBox(
-  x1: number,
-  y1: number,
-  x2: number,
-  y2: number,
-  reach: number,
-  box: Box,
-): boolean {
-  // Separating axes: the box's own two (the index has tested them, but not for callers without one) and the segment's normal.
+/** Whether a line, `reach` wide to each side, touches the box (its bevelled corners taken as square). */
+export function lineTouchesBox([x1, y1, x2, y2]: Line, reach: number, box: Box): boolean {
+  // Separating axes: the box's own two (the index has tested them, but not for callers without one) and the line's normal.
   const [cx, cy] = [box.x + box.width / 2, box.y + box.height / 2];
   const [hx, hy] = [box.width / 2, box.height / 2];
   if (Math.min(x1, x2) - reach > cx + hx || Math.max(x1, x2) + reach < cx - hx) return false;

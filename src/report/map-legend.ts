@@ -34,9 +34,8 @@ export function legendOf(
     bar,
     colours: single ? [PALETTE[Math.round(0.5 * (COLOUR_STEPS - 1))]] : PALETTE,
     ticks,
-    title: `${MAP_QUANTITIES[options.quantity].title}, ${unit.text}${scale.kind === 'log' ? ' (logarithmic)' : ''}`,
+    title: `${MAP_QUANTITIES[options.quantity].title}, ${unit.text}${scale.kind === 'log' ? ' (logarithmic)' : ''}${missing ? '; grey: no value or no flow' : ''}`,
     titleAt: [bar.x, bar.y - 1.35 * size],
-    grey: missing ? 'grey: no value or no flow' : null,
     sizeMm: size,
   };
 }

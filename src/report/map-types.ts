@@ -1,4 +1,4 @@
-import type { Box } from './map-geometry.ts';
+import type { Box, Line } from './map-geometry.ts';
 import type { MapQuantity } from './reach-values.ts';
 
 /** A polyline to be stroked; paper mm, x0 y0 x1 y1 … */
@@ -29,6 +29,9 @@ export interface MapUnread {
   readonly over: readonly (readonly number[])[];
 }
 
+/** Of the numbers and marks of findings. */
+export const FINDING_COLOUR = '#b00020';
+
 /** Looks of what was not read. */
 export const PALE_LINE = '#c4c4c4';
 export const PALE_FILL = '#e9e9e9';
@@ -38,7 +41,7 @@ export interface MapLabel {
   readonly text: string;
   readonly box: Box;
   readonly sizeMm: number;
-  readonly leader: readonly [number, number, number, number] | null;
+  readonly leader: Line | null;
 }
 
 export interface MapLegend {
@@ -46,11 +49,9 @@ export interface MapLegend {
   readonly bar: Box;
   readonly colours: readonly string[];
   readonly ticks: readonly { readonly x: number; readonly text: string }[];
-  /** "mean floor shear, Pa (logarithmic)" */
+  /** "mean floor shear, Pa (logarithmic); grey: no value or no flow" */
   readonly title: string;
   readonly titleAt: readonly [number, number];
-  /** "grey: no value"; null when every reach has one. */
-  readonly grey: string | null;
   readonly sizeMm: number;
 }
 

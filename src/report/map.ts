@@ -9,6 +9,7 @@ import { legendOf } from './map-legend.ts';
 import { MAP_QUANTITIES } from './map-quantities.ts';
 import { groundStrokes, reachStrokes, thinned } from './map-strokes.ts';
 import type { MapDrawing, MapOptions, MapUnread, ScaleBar } from './map-types.ts';
+import { joined } from './plain-text.ts';
 import { type MapQuantity, reachValues } from './reach-values.ts';
 import type { ReportedCase } from './report.ts';
 
@@ -136,11 +137,10 @@ function scaleBarOf({ frame, area }: Figure, options: MapOptions): ScaleBar {
 
 /** What stands under a map: how it is seen, and how many names found no room. */
 export function mapNotes({ caption, unlabelled, unnamedPorts }: MapDrawing): string {
-  const missing = [
-    unnamedPorts === 0 ? '' : countText(unnamedPorts, 'port'),
-    unlabelled === 0 ? '' : countText(unlabelled, 'reach', 'reaches'),
-  ].filter((text) => text !== '');
-  return missing.length === 0 ? caption : `${caption} No room for the names of ${missing.join(' and ')}.`;
+  const ports = unnamedPorts === 0 ? null : countText(unnamedPorts, 'port');
+  const reaches = unlabelled === 0 ? null : countText(unlabelled, 'reach', 'reaches');
+  const missing = joined([ports, reaches], ' and ');
+  return missing === '' ? caption : `${caption} No room for the names of ${missing}.`;
 }
 
 function captionOf(scale: number, { under, over }: MapUnread): string {

@@ -4,7 +4,7 @@ import { niceStep } from './colour-scale.ts';
 import { type LabelWish, placeLabels } from './label-placement.ts';
 import { labelWish, shortName } from './label-wish.ts';
 import { edgeOn, holesOn, type PaperFrame, paperFrame } from './map-frame.ts';
-import { type Box, type ChipGeometry, stripHalfWidthMm } from './map-geometry.ts';
+import { type Box, type ChipGeometry, type Line, stripHalfWidthMm } from './map-geometry.ts';
 import { paintedWidthMm, RIM_COLOUR } from './map-strokes.ts';
 import type { MapHole, MapStroke, Picture, PictureOptions, ScaleBar } from './map-types.ts';
 
@@ -15,7 +15,7 @@ export interface PlaceDrawing extends Picture {
   /** Channels in view: rim first, then fill; those the finding names are darker. */
   readonly strokes: readonly MapStroke[];
   /** The distance the finding speaks of. */
-  readonly mark: readonly [number, number, number, number] | null;
+  readonly mark: Line | null;
   /** The place itself. */
   readonly cross: readonly [number, number];
 }
@@ -112,14 +112,14 @@ function touches(x: number, y: number, radius: number, box: Box): boolean {
 }
 
 function strokesOf(
-  { chip, pieces, pieceChannel }: ChipGeometry,
+  { chip, pieceLine, pieceChannel }: ChipGeometry,
   inView: readonly number[],
   named: ReadonlySet<string>,
   { x, y, scale }: PaperFrame,
 ): MapStroke[] {
   const runs: { channel: number; points: number[]; last: number }[] = [];
   for (const piece of inView) {
-    const [x1, y1, x2, y2] = pieces.subarray(4 * piece, 4 * piece + 4);
+    const [x1, y1, x2, y2] = pieceLine(piece);
     const run = runs.at(-1);
     const follows =
       run !== undefined &&
@@ -168,7 +168,10 @@ function labelWishes(
     const channel = geometry.chip.channels[index];
     if (!named.has(channel.name)) continue;
     const clear = Math.max(stripHalfWidthMm(channel) * frame.scale, 0.15) + 0.2;
-    const anchors = inViewPoints(geometry, piece, view, frame).map((point) => ({ ...point, clear }));
+    const anchors = inViewPoints(geometry.pieceLine(piece), view, frame).map((point) => ({
+      ...point,
+      clear,
+    }));
     wishes.push(wish(shortName(channel.name, readable), anchors));
   }
   for (const { name, x, y, radiusMm } of holes.slice(0, 6)) {
@@ -186,8 +189,9 @@ function longestPieces(
 ): ReadonlyMap<number, number> {
   const best = new Map<number, { piece: number; length: number }>();
   for (const piece of inView) {
-    const [x1, y1, x2, y2] = geometry.pieces.subarray(4 * piece, 4 * piece + 4);
-    const [from, to] = visibleShare(x1, y1, x2, y2, view);
+    const line = geometry.pieceLine(piece);
+    const [x1, y1, x2, y2] = line;
+    const [from, to] = visibleShare(line, view);
     const length = (to - from) * Math.hypot(x2 - x1, y2 - y1);
     const channel = geometry.pieceChannel[piece];
     if (length > (best.get(channel)?.length ?? -1)) best.set(channel, { piece, length });
@@ -195,8 +199,11 @@ function longestPieces(
   return new Map([...best].map(([channel, { piece }]) => [channel, piece]));
 }
 
-/** Liang–Barsky: from where to where, as shares, a piece lies inside the view; its middle twice when it lies outside. */
-function visibleShare(x1: number, y1: number, x2: number, y2: number, view: Box): readonly [number, number] {
+/**
+ * Liang–Barsky: from where to where, as shares, a piece lies inside the view; its middle twice when it lies outside. Level and
+ * upright pieces just beside the view count as inside: a strip that shows is named though its centreline does not show.
+ */
+function visibleShare([x1, y1, x2, y2]: Line, view: Box): readonly [number, number] {
   let [from, to] = [0, 1];
   for (const [start, delta, low, high] of [
     [x1, x2 - x1, view.x, view.x + view.width],
@@ -211,14 +218,9 @@ function visibleShare(x1: number, y1: number, x2: number, y2: number, view: Box)
 }
 
 /** Points of a piece inside the view, in paper mm: the middle of what shows, then its quarters. */
-function inViewPoints(
-  { pieces }: ChipGeometry,
-  piece: number,
-  view: Box,
-  frame: PaperFrame,
-): { x: number; y: number }[] {
-  const [x1, y1, x2, y2] = pieces.subarray(4 * piece, 4 * piece + 4);
-  const [from, to] = visibleShare(x1, y1, x2, y2, view);
+function inViewPoints(line: Line, view: Box, frame: PaperFrame): { x: number; y: number }[] {
+  const [x1, y1, x2, y2] = line;
+  const [from, to] = visibleShare(line, view);
   return [0.5, 0.25, 0.75].map((share) => {
     const t = from + (to - from) * share;
     return { x: frame.x(x1 + (x2 - x1) * t), y: frame.y(y1 + (y2 - y1) * t) };

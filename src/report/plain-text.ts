@@ -10,6 +10,11 @@ export function cleanText(text: string): string {
     .replace(/\p{Variation_Selector}/gu, '');
 }
 
+/** The parts that there are, in one text. */
+export function joined(parts: readonly (string | null)[], separator: string): string {
+  return parts.filter(Boolean).join(separator);
+}
+
 /** Columns that a text takes in a terminal: 2 for wide East Asian characters and emoji, 0 for combining marks. */
 export function displayWidth(text: string): number {
   let width = 0;
@@ -19,51 +24,22 @@ export function displayWidth(text: string): number {
 
 function characterWidth(character: string): number {
   if (/[\p{Mn}\p{Me}\p{Cf}\p{Cc}]/u.test(character)) return 0;
-  return isWide(character.codePointAt(0) ?? 0) ? 2 : 1;
+  return WIDE.test(character) ? 2 : 1;
 }
 
-/** Ranges of East Asian Width W and F (Unicode TR 11), and emoji. */
-const WIDE: readonly (readonly [number, number])[] = [
-  [0x1100, 0x115f],
-  [0x231a, 0x231b],
-  [0x23e9, 0x23f3],
-  [0x25fd, 0x25fe],
-  [0x2614, 0x2615],
-  [0x2648, 0x2653],
-  [0x26a1, 0x26a1],
-  [0x2705, 0x2705],
-  [0x274c, 0x274e],
-  [0x2753, 0x2757],
-  [0x2b1b, 0x2b1c],
-  [0x2b50, 0x2b55],
-  [0x2e80, 0x303e],
-  [0x3041, 0x33ff],
-  [0x3400, 0x4dbf],
-  [0x4e00, 0x9fff],
-  [0xa000, 0xa4cf],
-  [0xa960, 0xa97f],
-  [0xac00, 0xd7a3],
-  [0xf900, 0xfaff],
-  [0xfe30, 0xfe6f],
-  [0xff00, 0xff60],
-  [0xffe0, 0xffe6],
-  [0x16fe0, 0x18aff],
-  [0x1b000, 0x1b2ff],
-  [0x1f004, 0x1f0cf],
-  [0x1f18e, 0x1f19a],
-  [0x1f200, 0x1f320],
-  [0x1f32d, 0x1f64f],
-  [0x1f680, 0x1f6ff],
-  [0x1f7e0, 0x1f7eb],
-  [0x1f900, 0x1f9ff],
-  [0x1fa70, 0x1faff],
-  [0x20000, 0x3fffd],
-];
-
-function isWide(codePoint: number): boolean {
-  if (codePoint < 0x1100) return false;
-  return WIDE.some(([first, last]) => codePoint >= first && codePoint <= last);
-}
+/** East Asian Width W and F (Unicode TR 11), and emoji. */
+const WIDE = new RegExp(
+  [
+    String.raw`[\u1100-\u115F\u231A-\u231B\u23E9-\u23F3\u25FD-\u25FE\u2614-\u2615\u2648-\u2653\u26A1\u2705`,
+    String.raw`\u274C-\u274E\u2753-\u2757\u2B1B-\u2B1C\u2B50-\u2B55\u2E80-\u303E\u3041-\u33FF`,
+    String.raw`\u3400-\u4DBF\u4E00-\u9FFF\uA000-\uA4CF\uA960-\uA97F\uAC00-\uD7A3\uF900-\uFAFF`,
+    String.raw`\uFE30-\uFE6F\uFF00-\uFF60\uFFE0-\uFFE6\u{16FE0}-\u{18AFF}\u{1B000}-\u{1B2FF}`,
+    String.raw`\u{1F004}-\u{1F0CF}\u{1F18E}-\u{1F19A}\u{1F200}-\u{1F320}\u{1F32D}-\u{1F64F}`,
+    String.raw`\u{1F680}-\u{1F6FF}\u{1F7E0}-\u{1F7EB}\u{1F900}-\u{1F9FF}\u{1FA70}-\u{1FAFF}`,
+    String.raw`\u{20000}-\u{3FFFD}]`,
+  ].join(''),
+  'u',
+);
 
 /** Cuts to `width` columns with an ellipsis; shorter texts come back as they are. */
 export function clipText(text: string, width: number): string {

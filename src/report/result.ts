@@ -1,5 +1,5 @@
 import { channelForm } from '../chip/sections.ts';
-import type { Chip, Port, PortRun, Run } from '../chip/types.ts';
+import type { Chip, Run } from '../chip/types.ts';
 import type { FindingReport } from '../findings/types.ts';
 import { roomLengthM } from '../network/lengths.ts';
 import { nodeName, reachName, segmentName } from '../network/names.ts';
@@ -150,7 +150,7 @@ function casePartOf(input: CaseInput): CasePart {
       accepted: findings.counts.accepted,
       rules_not_run: findings.counts.rulesNotRun,
     },
-    ports: chip.ports.map((port, i) => portRow(port, run.ports[i], i, flow, input.jointShares)),
+    ports: chip.ports.map((_, port) => portRow(input, port)),
     nodes: rows(network.nodeCount, (node) => nodeRow(network, flow, node)),
     reaches: rows(network.reachCount, (reach) => reachRow(input, reach)),
     segments: rows(network.segmentCount, (segment) => segmentRow(input, segment)),
@@ -170,13 +170,9 @@ function celsius(kelvin: number): number {
   return Number((kelvin - 273.15).toFixed(9));
 }
 
-function portRow(
-  port: Port,
-  { condition, tubing }: PortRun,
-  index: number,
-  flow: FlowState,
-  jointShares: JointShares | undefined,
-): PortRow {
+function portRow({ chip, run, flow, jointShares }: CaseInput, index: number): PortRow {
+  const port = chip.ports[index];
+  const { condition, tubing } = run.ports[index];
   const flowM3s = flow.portFlow[index];
   const volumeM3 =
     tubing.length === 0
@@ -193,8 +189,8 @@ function portRow(
     flow_m3_s: known(flowM3s),
     tubing_volume_m3: volumeM3,
     tubing_time_s: volumeM3 === null ? null : known(residenceTime(volumeM3, flowM3s)),
-    joint_flow_share: jointShares === undefined ? null : known(jointShares.portFlow[index]),
-    joint_pressure_share: jointShares === undefined ? null : known(jointShares.portPressure[index]),
+    joint_flow_share: known(jointShares?.portFlow[index]),
+    joint_pressure_share: known(jointShares?.portPressure[index]),
   };
 }
 
@@ -246,7 +242,7 @@ function reachRow(input: CaseInput, reach: number): ReachRow {
     residence_time_s: known(form && residenceTime(volumeOf(form, roomM), flow.reachFlow[reach])),
     fastest_time_s: known(state && fastestTime(state, roomM)),
     volume_m3: known(form && volumeOf(form, roomM)),
-    joint_flow_share: jointShares === undefined ? null : known(jointShares.reachFlow[reach]),
+    joint_flow_share: known(jointShares?.reachFlow[reach]),
   };
 }
 

@@ -1,6 +1,7 @@
 import { formatNumber, type Show } from '../runsheet/shown.ts';
 import type { Spread, SpreadOutput } from '../spread/types.ts';
 import { axisTicks } from './colour-scale.ts';
+import { joined } from './plain-text.ts';
 import { keptShareText, outputText, outputUnit, quantityText } from './spread-rows.ts';
 
 /** A distribution as a picture in data: numbers in the shown unit along the axis, heights as shares of the tallest bar or curve. */
@@ -48,7 +49,7 @@ export function distributionChart(
   const title = outputText(output);
   return {
     title: output.name,
-    subtitle: [quantityText(output), kept].filter((text) => text !== '').join(', '),
+    subtitle: joined([quantityText(output), kept], ', '),
     unit: unit.text,
     low: low / unit.si,
     high: high / unit.si,

@@ -3,7 +3,14 @@ import { known } from './known.ts';
 import { drawMap, mapNotes } from './map.ts';
 import { chipGeometry } from './map-geometry.ts';
 import { MAP_QUANTITIES } from './map-quantities.ts';
-import { type MapDrawing, type MapLabel, type MapStroke, PALE_FILL, PALE_LINE } from './map-types.ts';
+import {
+  FINDING_COLOUR,
+  type MapDrawing,
+  type MapLabel,
+  type MapStroke,
+  PALE_FILL,
+  PALE_LINE,
+} from './map-types.ts';
 import { cleanText, displayWidth } from './plain-text.ts';
 import { AT_FOUND_SETTINGS } from './pump-rows.ts';
 import { quantityTexts } from './quantities.ts';
@@ -130,7 +137,7 @@ function labels({ labels: placed, markers }: MapDrawing, { part }: ReportedCase)
   return [
     ...markers.map(({ number, x, y }) => {
       const { rule, message } = part.findings[number - 1];
-      return `<circle cx="${mm(x)}" cy="${mm(y)}" r="0.7" fill="#ffffff" stroke="#b00020" stroke-width="0.4"><title>${escapeXml(`${number} ${rule}: ${cleanText(message)}`)}</title></circle>\n`;
+      return `<circle cx="${mm(x)}" cy="${mm(y)}" r="0.7" fill="#ffffff" stroke="${FINDING_COLOUR}" stroke-width="0.4"><title>${escapeXml(`${number} ${rule}: ${cleanText(message)}`)}</title></circle>\n`;
     }),
     ...placed.map(label),
   ];
@@ -140,10 +147,10 @@ function label({ kind, text, box, sizeMm, leader }: MapLabel): string {
   const line =
     leader === null
       ? ''
-      : `<path d="${pathData(leader)}" stroke="${kind === 'finding' ? '#b00020' : '#505050'}" stroke-width="0.15" fill="none"/>`;
+      : `<path d="${pathData(leader)}" stroke="${kind === 'finding' ? FINDING_COLOUR : '#505050'}" stroke-width="0.15" fill="none"/>`;
   const frame =
     kind === 'finding'
-      ? `<rect x="${mm(box.x)}" y="${mm(box.y)}" width="${mm(box.width)}" height="${mm(box.height)}" rx="0.6" fill="#ffffff" stroke="#b00020" stroke-width="0.3"/>`
+      ? `<rect x="${mm(box.x)}" y="${mm(box.y)}" width="${mm(box.width)}" height="${mm(box.height)}" rx="0.6" fill="#ffffff" stroke="${FINDING_COLOUR}" stroke-width="0.3"/>`
       : '';
   const weight = kind === 'reach' ? '' : ' font-weight="bold"';
   const x = mm(box.x + box.width / 2);
@@ -166,7 +173,7 @@ function foot({ legend, scaleBar }: MapDrawing): string[] {
   const { bar: box } = legend;
   return [
     bar,
-    `<text x="${mm(legend.titleAt[0])}" y="${mm(legend.titleAt[1] + sizeMm)}">${escapeXml([legend.title, legend.grey].filter((part) => part !== null).join('; '))}</text>\n`,
+    `<text x="${mm(legend.titleAt[0])}" y="${mm(legend.titleAt[1] + sizeMm)}">${escapeXml(legend.title)}</text>\n`,
     ...legend.colours.map(
       (colour, i) =>
         `<rect x="${mm(box.x + i * step)}" y="${mm(box.y)}" width="${mm(step + 0.1)}" height="${mm(box.height)}" fill="${colour}"/>`,

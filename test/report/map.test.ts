@@ -2,7 +2,7 @@ import { describe, expect, test } from 'vitest';
 import { colourScale, legendTicks, PALETTE } from '../../src/report/colour-scale.ts';
 import { shortName } from '../../src/report/label-wish.ts';
 import { drawMap, mapNotes } from '../../src/report/map.ts';
-import { type Box, chipGeometry, segmentTouchesBox } from '../../src/report/map-geometry.ts';
+import { type Box, chipGeometry, lineTouchesBox } from '../../src/report/map-geometry.ts';
 import type { MapDrawing, MapOptions } from '../../src/report/map-types.ts';
 import { displayWidth } from '../../src/report/plain-text.ts';
 import type { ReportedCase } from '../../src/report/report.ts';
@@ -92,11 +92,8 @@ describe('a map', () => {
           ]) {
             for (let k = 0; k + 3 < points.length; k += 2) {
               expect(
-                segmentTouchesBox(
-                  points[k],
-                  points[k + 1],
-                  points[k + 2],
-                  points[k + 3],
+                lineTouchesBox(
+                  [points[k], points[k + 1], points[k + 2], points[k + 3]],
                   painted / 2 - 0.1,
                   box,
                 ),
@@ -126,7 +123,7 @@ describe('a map', () => {
         for (const { points } of drawing.ground)
           for (let k = 0; k + 3 < points.length; k += 2)
             expect(
-              segmentTouchesBox(points[k], points[k + 1], points[k + 2], points[k + 3], 0, {
+              lineTouchesBox([points[k], points[k + 1], points[k + 2], points[k + 3]], 0, {
                 x: x - 0.05,
                 y: y - 0.05,
                 width: 0.1,

@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { cleanText, clipText, displayWidth, wrapText } from '../../src/report/plain-text.ts';
+import { cleanText, clipText, displayWidth, joined, wrapText } from '../../src/report/plain-text.ts';
 
 describe('plain text', () => {
   test.each([
@@ -44,4 +44,9 @@ describe('plain text', () => {
     );
     expect(cleanText('a\r\n\tb\u202ec\ufeff')).toBe('a bc');
   });
+});
+
+test('parts that do not exist leave no separator behind', () => {
+  expect(joined(['a', null, '', 'b'], ', ')).toBe('a, b');
+  expect(joined([null, ''], ', ')).toBe('');
 });

@@ -1,7 +1,7 @@
 import { reachName } from '../../network/names.ts';
 import { formatNumber, type Show } from '../../runsheet/shown.ts';
 import { type Column, figures, words } from '../columns.ts';
-import { cleanText } from '../plain-text.ts';
+import { cleanText, joined } from '../plain-text.ts';
 import { quantityTexts } from '../quantities.ts';
 import { hasWindow, outsideWindows, windowTexts } from '../reach-values.ts';
 import type { ReportedCase } from '../report.ts';
@@ -33,8 +33,8 @@ export function writeCases(contexts: readonly PageContext[]): void {
   const { cases } = report;
   const section = chapter(paper, 'Cases compared', 'portrait');
   const { sheet } = one.run;
-  const drawing = [sheet?.title ?? '', sheet === null ? '' : drawingText(sheet.drawing)];
-  section.paragraph([...drawing, `layout ${report.result.layout.file}`].filter(Boolean).join(', '));
+  const drawing = sheet === null ? null : drawingText(sheet.drawing);
+  section.paragraph(joined([sheet?.title ?? null, drawing, `layout ${report.result.layout.file}`], ', '));
   const total = (key: keyof CountsRow): number => cases.reduce((sum, { part }) => sum + part.counts[key], 0);
   const counts = verdictCounts({
     blockers: total('blockers'),
@@ -121,8 +121,7 @@ function writeTable(section: Section, cases: readonly ReportedCase[]): void {
     ],
     { size: 7, group: ({ group }) => group, isBold: (one) => one === verdict },
   );
-  if (more > 0)
-    section.paragraph(`… and ${more} more reaches with a window: see the tables of reaches.`, SMALL);
+  section.more(more, 'more reaches with a window: see the tables of reaches.');
 }
 
 const PORTS = 'Ports: condition; pressure at the pump; flow into the chip';

@@ -5,6 +5,8 @@ import type { Section } from './section.ts';
 export const INK = '#222222';
 export const TITLE: TextStyle = { size: 7, weight: 'bold' };
 export const LABEL: TextStyle = { size: 6.2 };
+/** Bars and curves of what was computed. */
+export const DARK = '#1b4965';
 export const BAND_EDGE = '#5c8a48';
 export const BAND = '#dcebd5';
 
@@ -58,8 +60,7 @@ export function paintField(
   doc
     .rect(left, top, right - left, bottom - top)
     .lineWidth(lineWidth)
-    .strokeColor(INK)
-    .stroke();
+    .stroke(INK);
 }
 
 /** Lines at what is asked; an open end has none. */
@@ -71,19 +72,6 @@ export function paintEnds(
 ): void {
   for (const end of [min, max]) {
     if (end === null) continue;
-    doc.moveTo(toX(end), top).lineTo(toX(end), bottom).lineWidth(lineWidth).strokeColor(BAND_EDGE).stroke();
+    doc.moveTo(toX(end), top).lineTo(toX(end), bottom).lineWidth(lineWidth).stroke(BAND_EDGE);
   }
-}
-
-/** A short line at the edge of the field. */
-export function paintTick(
-  { doc }: Paper,
-  x: number,
-  y: number,
-  dx: number,
-  dy: number,
-  lineWidth: number,
-): void {
-  doc.moveTo(x, y).lineTo(x + dx, y + dy);
-  doc.lineWidth(lineWidth).strokeColor(INK).stroke();
 }

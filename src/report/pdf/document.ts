@@ -1,3 +1,4 @@
+import { joined } from '../plain-text.ts';
 import { AT_FOUND_SETTINGS } from '../pump-rows.ts';
 import type { Report } from '../report.ts';
 import { casesLine, verdictLine } from '../verdict-line.ts';
@@ -28,12 +29,8 @@ export function writePdf(report: Report, options: PdfOptions): Promise<Uint8Arra
   const { sheet } = cases[0].run;
   const creator = `${result.tool.name} ${result.tool.version}`;
   const title = sheet?.title ?? result.layout.file;
-  const paper = new Paper({
-    ...options,
-    title,
-    subject: `${subjectOf(cases)} of ${result.layout.file}`,
-    creator,
-  });
+  const subject = `${subjectOf(cases)} of ${result.layout.file}`;
+  const paper = new Paper(options, { title, subject, creator });
   const contexts = cases.map((one) => pageContext(paper, report, one, options.date));
   writeCases(contexts);
   for (const context of contexts) {
@@ -75,5 +72,5 @@ function headLine(report: Report, title: string): string {
   const drawing = sheet === null ? '' : drawingText(sheet.drawing);
   const verdict = 'cases' in result ? casesLine(report) : verdictLine(result.verdict, result.counts);
   const settings = cases.some(({ pump }) => pump !== undefined) ? AT_FOUND_SETTINGS : '';
-  return [title, drawing, verdict, settings].filter((part) => part !== '').join('  ·  ');
+  return joined([title, drawing, verdict, settings], '  ·  ');
 }

@@ -2,7 +2,9 @@ import type { Finding } from '../../findings/types.ts';
 import { countText } from '../../findings/words.ts';
 import { formatMm, measureText } from '../../runsheet/shown.ts';
 import { figures, words } from '../columns.ts';
+import { FINDING_COLOUR } from '../map-types.ts';
 import { drawPlace, type PlaceDrawing } from '../place.ts';
+import { joined } from '../plain-text.ts';
 import { verdictLine } from '../verdict-line.ts';
 import { BODY, BODY_BOLD, type PageContext, SMALL } from './context.ts';
 import {
@@ -15,6 +17,7 @@ import {
 } from './paint-map.ts';
 import { lineHeight, type Paper, POINTS_PER_MM } from './paper.ts';
 import { chapter, type Section } from './section.ts';
+import { trace } from './trace.ts';
 
 /** Findings with a picture each, then as lines of a table, then only counted. */
 const PICTURES = 120;
@@ -94,17 +97,14 @@ function findingTexts({ one }: PageContext, finding: Finding, measured: string |
   const { accepted, xMm, yMm, limit, unit, rule } = finding;
   const place = xMm === null || yMm === null ? null : `at ${formatMm(xMm)}, ${formatMm(yMm)} mm`;
   const names = finding.names.length === 0 ? null : `concerns ${finding.names.join(', ')}`;
-  const values = [
-    measured === null ? null : `measured ${measured}`,
-    limit === null ? null : `limit ${measureText(one.show, limit, unit, rule)}`,
-  ].filter((part) => part !== null);
-  const ceiling =
-    accepted === null || accepted.upTo === null
-      ? ''
-      : `, up to ${measureText(one.show, accepted.upTo, unit, rule)}`;
+  const value = (measure: number): string => measureText(one.show, measure, unit, rule);
+  const ceiling = accepted === null || accepted.upTo === null ? '' : `, up to ${value(accepted.upTo)}`;
   return [
     finding.message,
-    [place, names, ...values].filter((part) => part !== null).join('; '),
+    joined(
+      [place, names, measured && `measured ${measured}`, limit === null ? null : `limit ${value(limit)}`],
+      '; ',
+    ),
     finding.fix === '' ? '' : `To put it right: ${finding.fix}`,
     accepted === null
       ? ''
@@ -124,36 +124,27 @@ function paintPlace(paper: Paper, picture: PlaceDrawing, x: number, y: number): 
     paintMark(doc, picture);
     doc.restore();
     paintScaleBar(paper, picture.scaleBar);
-    doc.rect(0, 0, picture.widthMm, picture.viewHeightMm).lineWidth(0.2).strokeColor('#888888').stroke();
+    doc.rect(0, 0, picture.widthMm, picture.viewHeightMm).lineWidth(0.2).stroke('#888888');
   });
   for (const label of picture.labels) paintLabel(paper, label, x, y);
   paintScaleText(paper, picture.scaleBar, x, y, 0.7);
 }
 
-const MARK_COLOUR = '#b00020';
-
 function paintMark(doc: PDFKit.PDFDocument, { mark, cross: [x, y] }: PlaceDrawing): void {
   if (mark === null) {
-    doc.circle(x, y, 1.1).lineWidth(0.35).strokeColor(MARK_COLOUR).stroke();
-    doc
-      .moveTo(x - 1.8, y)
-      .lineTo(x + 1.8, y)
-      .moveTo(x, y - 1.8)
-      .lineTo(x, y + 1.8);
-    doc.lineWidth(0.2).strokeColor(MARK_COLOUR).stroke();
+    doc.circle(x, y, 1.1).lineWidth(0.35).stroke(FINDING_COLOUR);
+    trace(doc, [x - 1.8, y, x + 1.8, y]);
+    trace(doc, [x, y - 1.8, x, y + 1.8]);
+    doc.lineWidth(0.2).stroke(FINDING_COLOUR);
     return;
   }
   const [x1, y1, x2, y2] = mark;
   const length = Math.hypot(x2 - x1, y2 - y1) || 1;
   const [nx, ny] = [(-(y2 - y1) / length) * 1.2, ((x2 - x1) / length) * 1.2];
-  doc.moveTo(x1, y1).lineTo(x2, y2);
-  for (const [ex, ey] of [
-    [x1, y1],
-    [x2, y2],
-  ]) {
-    doc.moveTo(ex - nx, ey - ny).lineTo(ex + nx, ey + ny);
-  }
-  doc.lineWidth(0.35).strokeColor(MARK_COLOUR).stroke();
+  trace(doc, mark);
+  trace(doc, [x1 - nx, y1 - ny, x1 + nx, y1 + ny]);
+  trace(doc, [x2 - nx, y2 - ny, x2 + nx, y2 + ny]);
+  doc.lineWidth(0.35).stroke(FINDING_COLOUR);
 }
 
 function writeFurther({ one }: PageContext, section: Section, findings: readonly Finding[]): void {

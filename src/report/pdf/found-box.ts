@@ -4,7 +4,7 @@ import type { FoundTarget } from '../../solve/targets.ts';
 import { type Column, words } from '../columns.ts';
 import { fine, portName } from '../pump-rows.ts';
 import type { ReportedCase } from '../report.ts';
-import { BODY_BOLD, SMALL } from './context.ts';
+import { BODY_BOLD } from './context.ts';
 import type { Section } from './section.ts';
 
 /** Settings told in the box; all are on the page of the settings. */
@@ -39,14 +39,12 @@ export function writeFoundBox(section: Section, cases: readonly ReportedCase[]):
     ...inner,
     size: 7.5,
   });
-  const more = rows.length - MOST_ROWS;
-  if (more > 0) section.paragraph(`… and ${more} more, on the page of the pump settings.`, SMALL, inner);
+  section.more(rows.length - MOST_ROWS, 'more, on the page of the pump settings.', inner);
   paper.decoration(() => {
     paper.doc
       .rect(paper.left, top, paper.width, paper.y - top)
       .lineWidth(1)
-      .strokeColor(EDGE)
-      .stroke();
+      .stroke(EDGE);
   });
   paper.y += 4;
 }

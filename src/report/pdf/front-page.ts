@@ -1,6 +1,6 @@
 import { countText, listText } from '../../findings/words.ts';
 import { words } from '../columns.ts';
-import { cleanText } from '../plain-text.ts';
+import { cleanText, joined } from '../plain-text.ts';
 import { quantityColumns } from '../quantities.ts';
 import { outsideWindows, reachesThatMatter, windowCell } from '../reach-values.ts';
 import { casesLeftOut, ofCase } from '../report.ts';
@@ -57,12 +57,9 @@ function writeVerdict({ paper, report, one }: PageContext, section: Section): vo
     paper.put(paper.clip(title, paper.width, style), paper.left, paper.y, style);
   });
   paper.y += 18;
-  const drawing = [
-    sheet === null ? '' : drawingText(sheet.drawing),
-    sheet?.drawing.drawnBy == null ? '' : `drawn by ${sheet.drawing.drawnBy}`,
-    `layout ${report.result.layout.file}`,
-  ].filter((text) => text !== '');
-  section.paragraph(drawing.join(', '));
+  const drawn = sheet === null ? null : drawingText(sheet.drawing);
+  const by = sheet?.drawing.drawnBy == null ? null : `drawn by ${sheet.drawing.drawnBy}`;
+  section.paragraph(joined([drawn, by, `layout ${report.result.layout.file}`], ', '));
   const counts = `${verdictCounts(part.counts)}, ${countText(part.counts.notes, 'note')}`;
   writeBanner(section, part.verdict, counts);
   writeFoundBox(section, [one]);

@@ -1,5 +1,7 @@
+import { grouped } from '../../by-key.ts';
 import { mapNotes } from '../map.ts';
 import {
+  FINDING_COLOUR,
   type MapDrawing,
   type MapLabel,
   type MapStroke,
@@ -11,6 +13,7 @@ import {
 import { SMALL } from './context.ts';
 import { type Paper, POINTS_PER_MM } from './paper.ts';
 import type { Section } from './section.ts';
+import { trace } from './trace.ts';
 
 /** Paints a map over the page's width as a tagged figure, what must be said of it below; its texts were measured in the paper's font. */
 export function writeMap(section: Section, drawing: MapDrawing, alt: string, more = ''): void {
@@ -51,14 +54,14 @@ export function inMillimetres(paper: Paper, x: number, y: number, paint: () => v
 export function paintEdge({ doc }: Paper, { edge }: Picture, lineWidth: number): void {
   for (const ring of edge) {
     trace(doc, ring);
-    doc.lineWidth(lineWidth).strokeColor('#606060').stroke();
+    doc.lineWidth(lineWidth).stroke('#606060');
   }
 }
 
 function paintUnread({ doc }: Paper, { unread }: MapDrawing): void {
   if (unread.under.length === 0) return;
   for (const line of unread.under) trace(doc, line);
-  doc.lineWidth(0.15).strokeColor(PALE_LINE).stroke();
+  doc.lineWidth(0.15).stroke(PALE_LINE);
 }
 
 function paintObstacles({ doc }: Paper, { unread }: MapDrawing): void {
@@ -69,25 +72,14 @@ function paintObstacles({ doc }: Paper, { unread }: MapDrawing): void {
 
 /** Strokes of one look are painted in one go: 100 000 of them are a few dozen paint operations. */
 export function paintStrokes({ doc }: Paper, strokes: readonly MapStroke[]): void {
-  const looks = new Map<string, MapStroke[]>();
-  for (const stroke of strokes) {
-    const key = `${stroke.colour} ${stroke.widthMm} ${stroke.cap}`;
-    const same = looks.get(key);
-    if (same === undefined) looks.set(key, [stroke]);
-    else same.push(stroke);
-  }
+  const looks = grouped(strokes, ({ colour, widthMm, cap }) => `${colour} ${widthMm} ${cap}`);
   doc.lineJoin('round');
   for (const same of looks.values()) {
     for (const { points } of same) trace(doc, points);
     const [{ widthMm, colour, cap }] = same;
-    doc.lineCap(cap).lineWidth(widthMm).strokeColor(colour).stroke();
+    doc.lineCap(cap).lineWidth(widthMm).stroke(colour);
   }
   doc.lineCap('butt');
-}
-
-function trace(doc: PDFKit.PDFDocument, points: readonly number[]): void {
-  doc.moveTo(points[0], points[1]);
-  for (let i = 2; i < points.length; i += 2) doc.lineTo(points[i], points[i + 1]);
 }
 
 function paintHoles({ doc }: Paper, { holes }: MapDrawing): void {
@@ -95,8 +87,6 @@ function paintHoles({ doc }: Paper, { holes }: MapDrawing): void {
     doc.circle(x, y, Math.max(radiusMm, 0.3)).lineWidth(0.25).fillAndStroke('#ffffff', '#202020');
   }
 }
-
-const FINDING_COLOUR = '#b00020';
 
 function paintMarkers({ doc }: Paper, { markers }: MapDrawing): void {
   for (const { x, y } of markers)
@@ -112,10 +102,7 @@ export function paintLabel(
   inMillimetres(paper, x, y, () => {
     if (leader !== null) {
       trace(paper.doc, leader);
-      paper.doc
-        .lineWidth(0.12)
-        .strokeColor(kind === 'finding' ? FINDING_COLOUR : '#505050')
-        .stroke();
+      paper.doc.lineWidth(0.12).stroke(kind === 'finding' ? FINDING_COLOUR : '#505050');
     }
     if (kind === 'finding') {
       paper.doc
@@ -136,20 +123,15 @@ function paintLegend({ doc }: Paper, { legend }: MapDrawing): void {
   colours.forEach((colour, i) => {
     doc.rect(bar.x + i * step, bar.y, step + (i + 1 < colours.length ? 0.1 : 0), bar.height).fill(colour);
   });
-  for (const { x } of ticks) {
-    doc.moveTo(x, bar.y + bar.height).lineTo(x, bar.y + bar.height + 0.6);
-  }
-  doc.lineWidth(0.15).strokeColor('#000000').stroke();
+  for (const { x } of ticks) trace(doc, [x, bar.y + bar.height, x, bar.y + bar.height + 0.6]);
+  doc.lineWidth(0.15).stroke('#000000');
 }
 
 export function paintScaleBar({ doc }: Paper, { x, y, lengthMm }: ScaleBar): void {
-  doc
-    .moveTo(x, y - 0.6)
-    .lineTo(x, y + 0.6)
-    .moveTo(x, y)
-    .lineTo(x + lengthMm, y);
-  doc.moveTo(x + lengthMm, y - 0.6).lineTo(x + lengthMm, y + 0.6);
-  doc.lineWidth(0.35).strokeColor('#000000').stroke();
+  trace(doc, [x, y - 0.6, x, y + 0.6]);
+  trace(doc, [x, y, x + lengthMm, y]);
+  trace(doc, [x + lengthMm, y - 0.6, x + lengthMm, y + 0.6]);
+  doc.lineWidth(0.35).stroke('#000000');
 }
 
 /** The length of a scale bar, so far below it. */
@@ -168,9 +150,8 @@ function paintLegendTexts(paper: Paper, { legend }: MapDrawing, x: number, y: nu
   if (legend === null) return;
   const { bar, sizeMm, titleAt } = legend;
   const style = { size: sizeMm * POINTS_PER_MM };
-  const title = [legend.title, legend.grey].filter((part) => part !== null).join('; ');
   const [left, top] = [titleAt[0], titleAt[1] - 0.1 * sizeMm];
-  paper.put(title, x + left * POINTS_PER_MM, y + top * POINTS_PER_MM, style);
+  paper.put(legend.title, x + left * POINTS_PER_MM, y + top * POINTS_PER_MM, style);
   const below = y + (bar.y + bar.height + 0.7) * POINTS_PER_MM;
   for (const tick of legend.ticks) paper.putCentred(tick.text, x + tick.x * POINTS_PER_MM, below, style);
 }

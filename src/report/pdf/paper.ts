@@ -1,13 +1,13 @@
 import PDFDocument from 'pdfkit';
+import { remembered } from '../../by-key.ts';
 import { cleanText, wrapMeasured } from '../plain-text.ts';
 import { type EmbeddedFont, embeddedFont } from './embedded-font.ts';
 import type { Fonts, PaperSize } from './options.ts';
 import { layOutPlainly } from './plain-layout.ts';
 import { visualChunks } from './visual-order.ts';
 
-export type Weight = 'regular' | 'bold';
+type Weight = 'regular' | 'bold';
 export type Element = PDFKit.PDFStructureElement;
-export type StructureType = 'H1' | 'H2' | 'H3' | 'P' | 'Figure' | 'TH' | 'TD' | 'Caption' | 'Lbl' | 'Code';
 
 export interface TextStyle {
   readonly size: number;
@@ -24,6 +24,15 @@ const INK = '#111111';
 const UNIT_SIZE = 100;
 const MOST_KNOWN_WIDTHS = 50_000;
 
+/** A font, and what was asked of it so far: the search through its map and the measuring take their time. */
+interface Embedded {
+  readonly font: EmbeddedFont['font'];
+  /** How each character is shown. */
+  readonly shown: Map<string, string>;
+  /** Widths of texts at size 1. */
+  readonly widths: Map<string, number>;
+}
+
 /**
  * Sheets of paper with one embedded font in two weights, written from the top down. Everything drawn is either tagged with its
  * place in the document's structure or marked as decoration, so that a screen reader finds its way. Lengths in points.
@@ -33,28 +42,16 @@ export class Paper {
   /** Next free height on the page, from the top. */
   y = MARGIN;
   private readonly size: readonly [number, number];
-  /** The fonts, and how they show each character met so far: the search through a font's map takes its time. */
-  private readonly embedded: Record<
-    Weight,
-    { readonly font: EmbeddedFont['font']; readonly shown: Map<string, string> }
-  >;
+  private readonly embedded: Readonly<Record<Weight, Embedded>>;
   private readonly root: Element;
   private readonly chunks: Uint8Array[] = [];
-  /** Widths of texts at size 1, by weight. */
-  private readonly plainWidths = new Map<string, number>();
-  private readonly boldWidths = new Map<string, number>();
   /** Of the page that is written on; none yet. */
   private orientation: 'portrait' | 'landscape' | null = null;
 
-  constructor(options: {
-    readonly fonts: Fonts;
-    readonly paper: PaperSize;
-    readonly date: Date;
-    readonly title: string;
-    readonly subject: string;
-    readonly creator: string;
-  }) {
-    const { fonts, paper, date, title, subject, creator } = options;
+  constructor(
+    { fonts, paper, date }: PdfOptions,
+    { title, subject, creator }: Readonly<Record<'title' | 'subject' | 'creator', string>>,
+  ) {
     this.size = SIZES[paper];
     this.doc = new PDFDocument({
       autoFirstPage: false,
@@ -71,9 +68,9 @@ export class Paper {
     // pdfkit's own type wants a Buffer-like source; a Uint8Array is what it reads
     this.doc.registerFont('regular', fonts.regular as PDFKit.Mixins.PDFFontSource);
     this.doc.registerFont('bold', fonts.bold as PDFKit.Mixins.PDFFontSource);
-    const embed = (weight: Weight) => {
+    const embed = (weight: Weight): Embedded => {
       layOutPlainly(this.doc.font(weight));
-      return { font: embeddedFont(this.doc).font, shown: new Map<string, string>() };
+      return { font: embeddedFont(this.doc).font, shown: new Map(), widths: new Map() };
     };
     this.embedded = { regular: embed('regular'), bold: embed('bold') };
     this.root = this.doc.struct('Document');
@@ -128,7 +125,7 @@ export class Paper {
     return section;
   }
 
-  child(parent: Element, type: 'Table' | 'TR' | 'THead' | 'TBody' | 'L' | 'Sect'): Element {
+  child(parent: Element, type: 'Table' | 'TR'): Element {
     const element = this.doc.struct(type);
     parent.add(element);
     return element;
@@ -137,7 +134,7 @@ export class Paper {
   /** Draws something that has a place in the structure. */
   tagged(
     parent: Element,
-    type: StructureType,
+    type: 'H1' | 'H2' | 'H3' | 'P' | 'Figure' | 'TH' | 'TD' | 'Code',
     draw: () => void,
     options: { readonly alt?: string; readonly scope?: 'Row' | 'Column' } = {},
   ): void {
@@ -200,12 +197,12 @@ export class Paper {
   /** Width of readable text. */
   widthOf(text: string, style: TextStyle): number {
     // Tables ask for the same few texts again and again; a width is proportional to its size.
-    const known = style.weight === 'bold' ? this.boldWidths : this.plainWidths;
-    let width = known.get(text);
+    const { widths } = this.embedded[style.weight ?? 'regular'];
+    let width = widths.get(text);
     if (width === undefined) {
       this.use({ ...style, size: UNIT_SIZE });
       width = visualChunks(text).reduce((sum, chunk) => sum + this.doc.widthOfString(chunk), 0) / UNIT_SIZE;
-      if (known.size < MOST_KNOWN_WIDTHS) known.set(text, width);
+      if (widths.size < MOST_KNOWN_WIDTHS) widths.set(text, width);
     }
     return width * style.size;
   }
@@ -216,20 +213,10 @@ export class Paper {
    */
   readable(text: string, weight: Weight = 'regular'): string {
     let readable = '';
-    for (const character of cleanText(text)) readable += this.shown(character, weight);
-    return readable;
-  }
-
-  private shown(character: string, weight: Weight): string {
     const { font, shown } = this.embedded[weight];
-    let text = shown.get(character);
-    if (text === undefined) {
-      const codePoint = character.codePointAt(0) ?? 0;
-      const code = codePoint.toString(16).toUpperCase().padStart(4, '0');
-      text = font.hasGlyphForCodePoint(codePoint) ? character : `[U+${code}]`;
-      shown.set(character, text);
-    }
-    return text;
+    for (const character of cleanText(text))
+      readable += remembered(shown, character, () => shownBy(font, character));
+    return readable;
   }
 
   /** Readable text cut to a width with an ellipsis. */
@@ -253,7 +240,7 @@ export class Paper {
 
   rule(y: number, from = this.left, to = this.right, colour = '#888888', thickness = 0.4): void {
     this.decoration(() => {
-      this.doc.moveTo(from, y).lineTo(to, y).lineWidth(thickness).strokeColor(colour).stroke();
+      this.doc.moveTo(from, y).lineTo(to, y).lineWidth(thickness).stroke(colour);
     });
   }
 
@@ -285,6 +272,13 @@ export class Paper {
   private use({ size, weight = 'regular' }: TextStyle): void {
     this.doc.font(weight).fontSize(size);
   }
+}
+
+/** A character, or its code where the font lacks it. */
+function shownBy(font: EmbeddedFont['font'], character: string): string {
+  const codePoint = character.codePointAt(0) ?? 0;
+  if (font.hasGlyphForCodePoint(codePoint)) return character;
+  return `[U+${codePoint.toString(16).toUpperCase().padStart(4, '0')}]`;
 }
 
 /** Height of a line of text: the font's ascender to descender, and a little. */

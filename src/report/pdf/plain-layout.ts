@@ -1,3 +1,4 @@
+import { remembered } from '../../by-key.ts';
 import { embeddedFont, type Glyph, type GlyphRun } from './embedded-font.ts';
 
 /**
@@ -12,18 +13,11 @@ export function layOutPlainly(doc: PDFKit.PDFDocument): void {
   const embedded = embeddedFont(doc);
   const shaped = embedded.layout.bind(embedded);
   const known = new Map<string, Placed>();
-  const entryOf = (character: string): Placed => {
-    let entry = known.get(character);
-    if (entry === undefined) {
-      const glyph = embedded.font.glyphForCodePoint(character.codePointAt(0) ?? 0);
-      const advance = glyph.advanceWidth * embedded.scale;
-      entry = {
-        glyph,
-        position: { xAdvance: advance, yAdvance: 0, xOffset: 0, yOffset: 0, advanceWidth: advance },
-      };
-      known.set(character, entry);
-    }
-    return entry;
+  const placed = (character: string): Placed => {
+    const glyph = embedded.font.glyphForCodePoint(character.codePointAt(0) ?? 0);
+    const advance = glyph.advanceWidth * embedded.scale;
+    const position = { xAdvance: advance, yAdvance: 0, xOffset: 0, yOffset: 0, advanceWidth: advance };
+    return { glyph, position };
   };
   embedded.layout = (text, features, onlyWidth) => {
     if (!isPlain(text)) return shaped(text, features, onlyWidth);
@@ -31,7 +25,7 @@ export function layOutPlainly(doc: PDFKit.PDFDocument): void {
     const positions: GlyphRun['positions'][number][] = [];
     let advanceWidth = 0;
     for (const character of text) {
-      const { glyph, position } = entryOf(character);
+      const { glyph, position } = remembered(known, character, () => placed(character));
       glyphs.push(glyph);
       positions.push(position);
       advanceWidth += position.advanceWidth;

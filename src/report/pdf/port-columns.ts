@@ -1,5 +1,6 @@
 import { formatBound, type Show } from '../../runsheet/shown.ts';
 import { type Column, figures, words } from '../columns.ts';
+import { joined } from '../plain-text.ts';
 import { quantityColumns } from '../quantities.ts';
 import type { PortRow } from '../result-rows.ts';
 import { portQuantity } from '../result-schema.ts';
@@ -24,10 +25,13 @@ export function jointText({
   joint_flow_share,
   joint_pressure_share,
 }: Pick<PortRow, 'joint_flow_share' | 'joint_pressure_share'>): string {
-  const parts = [
-    joint_flow_share ? `flow ${formatBound(joint_flow_share)}` : '',
-    joint_pressure_share ? `pressure ${formatBound(joint_pressure_share)}` : '',
-  ].filter((part) => part !== '');
-  if (parts.length > 0) return parts.join(', ');
+  const moves = joined(
+    [
+      joint_flow_share ? `flow ${formatBound(joint_flow_share)}` : null,
+      joint_pressure_share ? `pressure ${formatBound(joint_pressure_share)}` : null,
+    ],
+    ', ',
+  );
+  if (moves !== '') return moves;
   return joint_flow_share === null && joint_pressure_share === null ? '–' : formatBound(0);
 }

@@ -6,19 +6,20 @@ import { ofCase } from '../report.ts';
 import {
   BAND,
   BAND_EDGE,
+  DARK,
   type Field,
   fieldOf,
   INK,
   LABEL,
   paintEnds,
   paintField,
-  paintTick,
   TITLE,
   writeCharts,
 } from './chart.ts';
 import { type PageContext, SMALL } from './context.ts';
 import type { Paper } from './paper.ts';
 import { chapter, type Section } from './section.ts';
+import { trace } from './trace.ts';
 
 /** Curves drawn; of more targets the tables tell. */
 const MOST_CURVES = 24;
@@ -44,8 +45,7 @@ export function writePump({ paper, one }: PageContext): void {
   }
   const curves = pump.targets.slice(0, MOST_CURVES).map((target) => pumpCurve(one, target, show));
   writeCurves(section, curves);
-  const more = pump.targets.length - MOST_CURVES;
-  if (more > 0) section.paragraph(`… and ${more} more targets, in the tables above.`, SMALL);
+  section.more(pump.targets.length - MOST_CURVES, 'more targets, in the tables above.');
 }
 
 const LEGEND =
@@ -67,7 +67,6 @@ function writeCurves(section: Section, curves: readonly PumpCurve[]): void {
   );
 }
 
-const CURVE = '#1b4965';
 const LIMIT = '#b00020';
 const MARGINS = { left: 40, right: 6, top: 13, bottom: 25 } as const;
 
@@ -84,19 +83,19 @@ function paintCurve(paper: Paper, curve: PumpCurve, x: number, y: number, width:
   paper.put(paper.clip(curve.title, width, TITLE), x, y, TITLE);
   paintField(paper, field, 0.5, () => paintCurves(paper, curve, field, toY));
   const [value, setting] = curve.found;
-  if (Number.isFinite(value))
-    doc.circle(toX(value), toY(setting), 2.6).lineWidth(1.1).strokeColor(INK).stroke();
+  if (Number.isFinite(value)) doc.circle(toX(value), toY(setting), 2.6).lineWidth(1.1).stroke(INK);
   for (const { at, text } of curve.x.ticks) {
-    paintTick(paper, toX(at), bottom, 0, 2.5, 0.5);
+    trace(doc, [toX(at), bottom, toX(at), bottom + 2.5]);
+    doc.lineWidth(0.5).stroke(INK);
     paper.putCentred(text, toX(at), bottom + 3.2, LABEL);
   }
   for (const { at, text } of curve.y.ticks) {
-    paintTick(paper, left - 2.5, toY(at), 2.5, 0, 0.5);
+    trace(doc, [left - 2.5, toY(at), left, toY(at)]);
+    doc.lineWidth(0.5).stroke(INK);
     paper.putRight(text, left - 4, toY(at) - 3.8, LABEL);
   }
-  curve.windows.forEach(({ text }, i) => {
+  curve.windows.forEach(({ text, window }, i) => {
     const style = { ...LABEL, colour: BAND_EDGE };
-    const { window } = curve.windows[i];
     const from = Math.max(left, window.min === null ? left : toX(window.min));
     paper.put(paper.clip(text, right - from - 6, style), from + 3, top + 2 + 8 * i, style);
   });
@@ -125,18 +124,12 @@ function paintCurves(paper: Paper, curve: PumpCurve, field: Field, toY: (setting
     paintEnds(paper, field, window, 0.5);
   }
   for (const { at } of curve.limits) {
-    doc
-      .moveTo(left, toY(at))
-      .lineTo(right, toY(at))
-      .dash(3, { space: 2 })
-      .lineWidth(0.7)
-      .strokeColor(LIMIT)
-      .stroke();
+    doc.moveTo(left, toY(at)).lineTo(right, toY(at)).dash(3, { space: 2 }).lineWidth(0.7).stroke(LIMIT);
     doc.undash();
   }
   for (const run of curve.runs) {
-    doc.moveTo(toX(run[0][0]), toY(run[0][1]));
-    for (const [value, setting] of run.slice(1)) doc.lineTo(toX(value), toY(setting));
-    doc.lineWidth(1.1).lineJoin('round').strokeColor(CURVE).stroke();
+    const points = run.flatMap(([value, setting]) => [toX(value), toY(setting)]);
+    trace(doc, points);
+    doc.lineWidth(1.1).lineJoin('round').stroke(DARK);
   }
 }

@@ -35,13 +35,10 @@ export function writeReaches({ paper, one }: PageContext): void {
       isBold: (row) => outside(row.channel, row.name),
     },
   );
-  const more = network.reachCount - rows.length;
-  if (more > 0) {
-    section.paragraph(
-      `… and ${more} more of ${countText(network.reachCount, 'reach', 'reaches')}: all are in the CSV (--formats csv) and JSON (--formats json) files.`,
-      SMALL,
-    );
-  }
+  section.more(
+    network.reachCount - rows.length,
+    `more of ${countText(network.reachCount, 'reach', 'reaches')}: all are in the CSV (--formats csv) and JSON (--formats json) files.`,
+  );
 }
 
 const LEGEND =
@@ -113,5 +110,7 @@ function groupText(
   const isGroup = (reach: number): boolean =>
     hasWindow(run.channels[network.reachChannel[reach]]) || network.channelReachCount[reach] > 1;
   if (!isGroup(order[i]) && (i === 0 || !isGroup(order[i - 1]))) return null;
-  return [`${row.channel}, layer ${row.layer}`, ...windowTexts(run.channels[channel], show)].join('; ');
+  return [`${row.channel}, layer ${row.layer ?? '(none)'}`, ...windowTexts(run.channels[channel], show)].join(
+    '; ',
+  );
 }

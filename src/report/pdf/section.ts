@@ -1,5 +1,5 @@
 import type { Column } from '../columns.ts';
-import { BODY } from './context.ts';
+import { BODY, SMALL } from './context.ts';
 import type { Element, Paper, TextStyle } from './paper.ts';
 import { drawTable, type TableOptions } from './table.ts';
 
@@ -35,6 +35,11 @@ export class Section {
     const x = at.x ?? paper.left;
     paper.lines(this.element, 'P', paper.wrap(text, at.width ?? paper.right - x, style), x, style);
     paper.y += 2;
+  }
+
+  /** Says of how many more than the ones above nothing stands here, and where they are; nothing when there are none. */
+  more(count: number, where: string, at?: { readonly x?: number; readonly width?: number }): void {
+    if (count > 0) this.paragraph(`… and ${count} ${where}`, SMALL, at);
   }
 
   table<Row>(rows: readonly Row[], columns: readonly Column<Row>[], options?: TableOptions<Row>): void {

@@ -13,11 +13,7 @@ export function writeBanner(section: Section, verdict: 'ready' | 'hold', countsT
   const wordWidth = paper.widthOf(word, wordStyle) + 16;
   paper.decoration(() => {
     paper.doc.rect(paper.left, boxY, wordWidth, 22).fill(VERDICT_COLOURS[verdict]);
-    paper.doc
-      .rect(paper.left, boxY, paper.width, 22)
-      .lineWidth(0.8)
-      .strokeColor(VERDICT_COLOURS[verdict])
-      .stroke();
+    paper.doc.rect(paper.left, boxY, paper.width, 22).lineWidth(0.8).stroke(VERDICT_COLOURS[verdict]);
   });
   paper.tagged(section.element, 'P', () => {
     paper.put(word, paper.left + 8, boxY + 2.2, wordStyle);

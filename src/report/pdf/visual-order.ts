@@ -12,18 +12,8 @@ const CHUNK = new RegExp(
   String.raw`[${RIGHT_TO_LEFT}][${RIGHT_TO_LEFT}\p{M}]*|\p{Nd}+(?:[.,:]\p{Nd}+)*|(?:(?![${RIGHT_TO_LEFT}])[\p{L}\p{M}])+|[\s\S]`,
   'gu',
 );
-const MIRRORED: Readonly<Record<string, string>> = {
-  '(': ')',
-  ')': '(',
-  '[': ']',
-  ']': '[',
-  '{': '}',
-  '}': '{',
-  '<': '>',
-  '>': '<',
-  '«': '»',
-  '»': '«',
-};
+/** Each bracket beside the one that mirrors it. */
+const BRACKETS = '()[]{}<>«»';
 
 /** Chunks from left to right; a text without right-to-left letters is one. Each holds letters of one direction only. */
 export function visualChunks(text: string): readonly string[] {
@@ -39,11 +29,16 @@ export function visualChunks(text: string): readonly string[] {
     if (leftToRight !== '') visual.push(leftToRight);
     leftToRight = '';
     const end = stretchEnd(chunks, i);
-    for (let k = end - 1; k >= i; k--) visual.push(MIRRORED[chunks[k]] ?? chunks[k]);
+    for (let k = end - 1; k >= i; k--) visual.push(mirrored(chunks[k]));
     i = end;
   }
   if (leftToRight !== '') visual.push(leftToRight);
   return visual;
+}
+
+function mirrored(chunk: string): string {
+  const at = BRACKETS.indexOf(chunk);
+  return at < 0 ? chunk : BRACKETS[at ^ 1];
 }
 
 /** One past the last right-to-left chunk that no left-to-right word parts from the first. */
