@@ -2,7 +2,7 @@ import PDFDocument from 'pdfkit';
 import { remembered } from '../../by-key.ts';
 import { cleanText, wrapMeasured } from '../plain-text.ts';
 import { type EmbeddedFont, embeddedFont } from './embedded-font.ts';
-import type { Fonts, PaperSize } from './options.ts';
+import type { PaperSize, PdfOptions } from './options.ts';
 import { layOutPlainly } from './plain-layout.ts';
 import { visualChunks } from './visual-order.ts';
 
