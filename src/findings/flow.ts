@@ -1,7 +1,8 @@
+import { reachesOfChannel } from '../asked/reaches.ts';
 import { reachName } from '../network/names.ts';
 import type { FindingContext } from './context.ts';
 import { deadPartAt } from './dead-parts.ts';
-import { middleOfReach, othersText, reachesOf, reachNames, worstReach } from './reaches.ts';
+import { middleOfReach, othersText, reachNames, worstReach } from './reaches.ts';
 import { found, isBelow, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
 import { showFor } from './words.ts';
@@ -42,7 +43,7 @@ function stagnant(context: FindingContext): RuleOutcome {
   const findings: Finding[] = [];
   chip.channels.forEach((_, c) => {
     const worst = worstReach(
-      reachesOf(context, c),
+      reachesOfChannel(context.network, c),
       (reach) => {
         const magnitude = Math.abs(flow.reachFlow[reach]);
         if (isDead[reach] === 1 || Number.isNaN(magnitude)) return null;

@@ -1,27 +1,6 @@
 import { reachName } from '../network/names.ts';
 import type { Network } from '../network/types.ts';
-import { type FindingContext, oncePerContext } from './context.ts';
-
-/** Reaches of each channel in drawn order: those of channel c are of[first[c]] … of[first[c + 1] − 1]. */
-interface ChannelReaches {
-  readonly first: Int32Array;
-  readonly of: Int32Array;
-}
-
-const byChannel = oncePerContext(({ network, chip }): ChannelReaches => {
-  const first = new Int32Array(chip.channels.length + 1);
-  for (let c = 0; c < chip.channels.length; c++) first[c + 1] = first[c] + network.channelReachCount[c];
-  const of = new Int32Array(network.reachCount);
-  for (let r = 0; r < network.reachCount; r++)
-    of[first[network.reachChannel[r]] + network.reachNumber[r] - 1] = r;
-  return { first, of };
-});
-
-/** The reaches of one channel, in drawn order. */
-export function reachesOf(context: FindingContext, channel: number): Int32Array {
-  const { first, of } = byChannel(context);
-  return of.subarray(first[channel], first[channel + 1]);
-}
+import type { FindingContext } from './context.ts';
 
 /** The worst reach of a channel by some measure, and how many reaches are at fault. */
 export interface Worst<T> {

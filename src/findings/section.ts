@@ -1,3 +1,4 @@
+import { reachesOfChannel } from '../asked/reaches.ts';
 import type { Channel } from '../chip/types.ts';
 import { reachName } from '../network/names.ts';
 import { meanRoofRise, risenResistanceFactor } from '../physics/roof.ts';
@@ -5,7 +6,7 @@ import { formatNumber, formatShare } from '../runsheet/shown.ts';
 import { acrossMark, middleOfChannel } from './centrelines.ts';
 import type { FindingContext } from './context.ts';
 import { type FreeSpan, freeSpan } from './free-span.ts';
-import { middleOfReach, othersText, reachesOf, reachNames, worstReach } from './reaches.ts';
+import { middleOfReach, othersText, reachNames, worstReach } from './reaches.ts';
 import {
   found,
   isAbove,
@@ -139,7 +140,7 @@ function softWalls(context: FindingContext): RuleOutcome {
     const widthM = (2 * channel.stripHalfWidthMm) / 1e3;
     const depthM = channel.depthMm / 1e3;
     const worst = worstReach(
-      reachesOf(context, c),
+      reachesOfChannel(context.network, c),
       (reach) => {
         const pressurePa = meanPressure(reach);
         if (Number.isNaN(pressurePa) || !(widthM > 0 && depthM > 0)) {

@@ -1,3 +1,4 @@
+import type { RunNetwork } from '../asked/run-network.ts';
 import { refuse } from '../chip/complain.ts';
 import { channelForm } from '../chip/sections.ts';
 import { refuseSeveral } from '../chip/targets.ts';
@@ -18,7 +19,6 @@ import {
 import { nearest } from '../runsheet/nearest.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { RunSheet, TargetEntry } from '../runsheet/types.ts';
-import type { RunNetwork } from './flow-network.ts';
 import type { FlowState } from './types.ts';
 
 /** What is looked at in a flow state. All three are linear in every port's setting. */

@@ -5,6 +5,8 @@
  * Wall shear, velocity and residence time say how much flows and not which way. The way is that in which the reach flows under the run sheet as written; where
  * nothing flows there, that in which `by` drives it by pushing into the chip, or by drawing out of it where it says `expect: out`.
  */
+
+import type { RunNetwork } from '../asked/run-network.ts';
 import { foundPumpLimits, pumpLimitValues } from '../chip/pump-limits.ts';
 import type { Run } from '../chip/types.ts';
 import { InputError } from '../errors.ts';
@@ -12,7 +14,6 @@ import type { Network } from '../network/types.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { PortCondition, RunSheet } from '../runsheet/types.ts';
 import { drivesOf, type PortDrive } from './drives.ts';
-import type { RunNetwork } from './flow-network.ts';
 import {
   type FlowFactor,
   factorFlow,

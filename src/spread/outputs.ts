@@ -1,3 +1,8 @@
+import { acceptedLimits, type KeptLimits } from '../asked/accepted.ts';
+import { passagesOf } from '../asked/passages.ts';
+import { reachesOfChannel } from '../asked/reaches.ts';
+import type { RunNetwork } from '../asked/run-network.ts';
+import { hasWindow, wallsOf } from '../asked/windows.ts';
 import { refuseSeveral } from '../chip/targets.ts';
 import { InputError } from '../errors.ts';
 import { NEAR_VACUUM_PA } from '../findings/pressure.ts';
@@ -21,11 +26,8 @@ import {
 import { nearest } from '../runsheet/nearest.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { ChannelEntry, PumpLimitEntry, ShearWindow, TargetEntry } from '../runsheet/types.ts';
-import type { RunNetwork } from '../solve/flow-network.ts';
 import type { FlowState } from '../solve/types.ts';
-import { acceptedLimits, type KeptLimits } from './accepted.ts';
 import type { ChipState, SpreadModel } from './model.ts';
-import { channelReaches, passagesOf } from './passages.ts';
 
 /** What a number is computed from. Flows of reaches count in the direction of the nominal flow. */
 export type Subject =
@@ -94,7 +96,7 @@ export function listOutputs(at: RunNetwork, nominal: FlowState): readonly Output
   for (const output of portOutputs(at)) add(output);
   for (const output of targetOutputs(at, nominal)) add(output);
   at.run.channels.forEach((settings, channel) => {
-    if (settings !== null) for (const output of windowOutputs(at, nominal, channel, settings)) add(output);
+    if (hasWindow(settings)) for (const output of windowOutputs(at, nominal, channel, settings)) add(output);
   });
   return [...outputs.values()];
 }
@@ -257,10 +259,9 @@ function windowOutputs(
   channel: number,
   settings: ChannelEntry,
 ): Output[] {
-  const { wallShear, residenceTime, flow, walls } = settings;
-  if (wallShear === null && residenceTime === null && flow === null) return [];
   const { network } = at;
-  const reaches = [...channelReaches(network, channel)];
+  const { wallShear, flow } = settings;
+  const reaches = [...reachesOfChannel(network, channel)];
   const { name: channelName } = network.chip.channels[channel];
   const outputs: Output[] = [];
   for (const reach of reaches) {
@@ -271,8 +272,7 @@ function windowOutputs(
       ...flowLimits,
       hasWindow: flow !== null,
     });
-    for (const wall of walls === 'all' ? (['floor', 'side'] as const) : (['floor'] as const))
-      outputs.push(...shearOutputs(at, reach, wall, wallShear, names));
+    for (const wall of wallsOf(settings)) outputs.push(...shearOutputs(at, reach, wall, wallShear, names));
   }
   outputs.push(...timeOutputs(at, channel, nominal.reachFlow));
   return outputs;
@@ -283,7 +283,7 @@ export function timeOutputs(at: RunNetwork, channel: number, reachFlow: Float64A
   const { network, run } = at;
   const { name } = network.chip.channels[channel];
   const window = run.channels[channel]?.residenceTime ?? null;
-  const reaches = [...channelReaches(network, channel)];
+  const reaches = [...reachesOfChannel(network, channel)];
   return passagesOf(network, reaches, reachFlow).flatMap((passage): Output[] => {
     const names = [...passage.map((r) => reachName(network, r)), name];
     const { min, max } = acceptedLimits(
@@ -455,7 +455,7 @@ function targetReaches(at: RunNetwork, target: TargetEntry): number[] {
   const { network } = at;
   const { chip } = network;
   const reaches = chip.channels.flatMap(({ drawnName }, channel) =>
-    drawnName === target.name ? [...channelReaches(network, channel)] : [],
+    drawnName === target.name ? [...reachesOfChannel(network, channel)] : [],
   );
   if (target.reach === null) return reaches;
   const named = reaches.filter((reach) => reachName(network, reach) === target.reach);

@@ -1,7 +1,7 @@
 import { expect, test } from 'vitest';
+import { acceptedLimits } from '../../src/asked/accepted.ts';
 import { reachName } from '../../src/network/names.ts';
 import { ductForm } from '../../src/physics/duct.ts';
-import { acceptedLimits } from '../../src/spread/accepted.ts';
 import { outputValue } from '../../src/spread/outputs.ts';
 import { spreadOf } from '../../src/spread/spread.ts';
 import { modelOf, oneDuct, outputNamed, spreadOfDrawing, varying } from './spread-of.ts';
