@@ -7,6 +7,7 @@
  */
 
 import type { RunNetwork } from '../asked/run-network.ts';
+import { refuseTarget } from '../asked/targets.ts';
 import { foundPumpLimits, pumpLimitValues } from '../chip/pump-limits.ts';
 import type { Run } from '../chip/types.ts';
 import { InputError } from '../errors.ts';
@@ -37,7 +38,6 @@ import {
   observedFor,
   observedWithin,
   readTargets,
-  refuseTarget,
   targetText,
   targetValue,
   type Wanted,

@@ -2,12 +2,10 @@ import { acceptedLimits, type KeptLimits } from '../asked/accepted.ts';
 import { passagesOf } from '../asked/passages.ts';
 import { reachesOfChannel } from '../asked/reaches.ts';
 import type { RunNetwork } from '../asked/run-network.ts';
+import { nodeOfTarget, reachOfTarget } from '../asked/targets.ts';
 import { hasWindow, wallsOf } from '../asked/windows.ts';
-import { refuseSeveral } from '../chip/targets.ts';
-import { InputError } from '../errors.ts';
 import { NEAR_VACUUM_PA } from '../findings/pressure.ts';
 import { isAbove, isBelow } from '../findings/rule.ts';
-import { findNodes } from '../network/find-node.ts';
 import { roomLengthM } from '../network/lengths.ts';
 import { nodeName, reachName } from '../network/names.ts';
 import type { Network } from '../network/types.ts';
@@ -23,8 +21,6 @@ import {
   type Wall,
   wallShear,
 } from '../physics/duct-state.ts';
-import { nearest } from '../runsheet/nearest.ts';
-import { quote } from '../runsheet/quote.ts';
 import type { ChannelEntry, PumpLimitEntry, ShearWindow, TargetEntry } from '../runsheet/types.ts';
 import type { FlowState } from '../solve/types.ts';
 import type { ChipState, SpreadModel } from './model.ts';
@@ -84,7 +80,7 @@ export interface Output {
 
 /**
  * What is followed: flow and pressure of every port, everything about every channel with a window, every target; each once.
- * @throws InputError for a target at a node that the network lacks
+ * @throws InputError for a target on no reach or node, or on several
  */
 export function listOutputs(at: RunNetwork, nominal: FlowState): readonly Output[] {
   const outputs = new Map<string, Output>();
@@ -113,12 +109,10 @@ function bothAsked(a: Output, b: Output): Output {
 }
 
 /** Nodes of the network whose pressure is an output. */
-export function pressureNodesOf(at: RunNetwork): readonly number[] {
-  const { targets } = at.run.sheet ?? { targets: [] };
-  return [
-    ...at.network.portNode,
-    ...targets.flatMap((target) => (target.on === 'node' ? [nodeOf(at, target)] : [])),
-  ];
+export function pressureNodesOf({ network, run: { sheet } }: RunNetwork): readonly number[] {
+  if (sheet === null) return [...network.portNode];
+  const named = sheet.targets.filter(({ on }) => on === 'node');
+  return [...network.portNode, ...named.map((target) => nodeOfTarget(network, sheet, target))];
 }
 
 /** NaN where the number does not exist. */
@@ -380,7 +374,9 @@ function timeOutput(network: Network, reaches: readonly number[], at: 'mean' | '
 function targetOutputs(at: RunNetwork, nominal: FlowState): Output[] {
   const { network, run } = at;
   const { chip } = network;
-  return (run.sheet?.targets ?? []).flatMap((target): Output[] => {
+  const { sheet } = run;
+  if (sheet === null) return [];
+  return sheet.targets.flatMap((target): Output[] => {
     switch (target.on) {
       case 'port': {
         const port = chip.ports.findIndex(({ drawnName }) => drawnName === target.name);
@@ -393,7 +389,7 @@ function targetOutputs(at: RunNetwork, nominal: FlowState): Output[] {
         return wanted.map((output) => ({ ...output, ...askedByTarget(target) }));
       }
       case 'node': {
-        const node = nodeOf(at, target);
+        const node = nodeOfTarget(network, sheet, target);
         return [
           {
             ...PLAIN,
@@ -406,11 +402,10 @@ function targetOutputs(at: RunNetwork, nominal: FlowState): Output[] {
           },
         ];
       }
-      case 'channel':
-        return targetReaches(at, target).map((reach) => ({
-          ...reachTarget(network, nominal, reach, target),
-          ...askedByTarget(target),
-        }));
+      case 'channel': {
+        const reach = reachOfTarget(network, sheet, target);
+        return [{ ...reachTarget(network, nominal, reach, target), ...askedByTarget(target) }];
+      }
       default:
         return target.on satisfies never;
     }
@@ -448,59 +443,6 @@ function reachTarget(network: Network, nominal: FlowState, reach: number, target
     default:
       return target.quantity satisfies never;
   }
-}
-
-/** The reach named, else every reach of the channel. */
-function targetReaches(at: RunNetwork, target: TargetEntry): number[] {
-  const { network } = at;
-  const { chip } = network;
-  const reaches = chip.channels.flatMap(({ drawnName }, channel) =>
-    drawnName === target.name ? [...reachesOfChannel(network, channel)] : [],
-  );
-  if (target.reach === null) return reaches;
-  const named = reaches.filter((reach) => reachName(network, reach) === target.reach);
-  if (named.length === 0)
-    refuseTarget(
-      at,
-      target,
-      'reach',
-      target.reach,
-      reaches.map((r) => reachName(network, r)),
-    );
-  return named;
-}
-
-function nodeOf(at: RunNetwork, target: TargetEntry): number {
-  const { network } = at;
-  const found = findNodes(network, target.name);
-  if (found.length === 1) return found[0];
-  const { sheet } = at.run;
-  if (sheet !== null && found.length > 1)
-    refuseSeveral(
-      sheet,
-      ['targets', target.index, 'node'],
-      target.name,
-      'node',
-      found.map((n) => nodeName(network, n)),
-    );
-  const names = Array.from({ length: network.nodeCount }, (_, node) => nodeName(network, node));
-  return refuseTarget(at, target, 'node', target.name, names);
-}
-
-function refuseTarget(
-  { network, run }: RunNetwork,
-  { line }: TargetEntry,
-  what: string,
-  name: string,
-  candidates: readonly string[],
-): never {
-  const near = nearest(name, candidates);
-  const hint =
-    near === null ? `its ${what}s are ${candidates.slice(0, 8).join(', ')}` : `did you mean ${quote(near)}?`;
-  throw new InputError(
-    `${run.sheet?.file ?? network.chip.file}:${line}`,
-    `targets: the network has no ${what} ${quote(name)} there; ${hint}`,
-  );
 }
 
 /** Whether a value keeps what is asked of it, with the slack of the rules. A channel's window on a flow is one on its magnitude, whatever its direction. */
