@@ -1,4 +1,5 @@
-import { LIMIT_SLACK } from '../chip/limits.ts';
+export { isAbove, isBelow } from '../asked/within.ts';
+
 import type { Sourced } from '../chip/types.ts';
 import type { FindingContext } from './context.ts';
 import type { Finding, NotRun, Severity } from './types.ts';
@@ -82,12 +83,4 @@ export function limitRule<T>(
       return limit === null ? withoutLimit(name, key, context) : found(run(context, limit));
     },
   };
-}
-
-export function isBelow(value: number, limit: number): boolean {
-  return value < limit - LIMIT_SLACK * Math.abs(limit);
-}
-
-export function isAbove(value: number, limit: number): boolean {
-  return value > limit + LIMIT_SLACK * Math.abs(limit);
 }

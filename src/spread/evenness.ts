@@ -1,7 +1,7 @@
 import { acceptedLimits } from '../asked/accepted.ts';
 import { evenGroupsOf } from '../asked/even.ts';
 import { reachesOfChannel } from '../asked/reaches.ts';
-import { isAbove } from '../findings/rule.ts';
+import { isAbove } from '../asked/within.ts';
 import type { ChipState, SpreadModel } from './model.ts';
 
 /** One group of channels that are to be even, and how often they were not. */

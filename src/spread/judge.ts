@@ -1,6 +1,6 @@
 import { acceptedLimits } from '../asked/accepted.ts';
 import { reachesOfChannel } from '../asked/reaches.ts';
-import { isAbove } from '../findings/rule.ts';
+import { isAbove } from '../asked/within.ts';
 import { reachName } from '../network/names.ts';
 import { type EvenGroup, evennessOf } from './evenness.ts';
 import type { ChipState, SpreadModel } from './model.ts';

@@ -1,11 +1,11 @@
 import { acceptedLimits, type KeptLimits } from '../asked/accepted.ts';
+import { NEAR_VACUUM_PA } from '../asked/near-vacuum.ts';
 import { passagesOf } from '../asked/passages.ts';
 import { reachesOfChannel } from '../asked/reaches.ts';
 import type { RunNetwork } from '../asked/run-network.ts';
 import { nodeOfTarget, reachOfTarget } from '../asked/targets.ts';
 import { hasWindow, wallsOf } from '../asked/windows.ts';
-import { NEAR_VACUUM_PA } from '../findings/pressure.ts';
-import { isAbove, isBelow } from '../findings/rule.ts';
+import { isAbove, isBelow } from '../asked/within.ts';
 import { roomLengthM } from '../network/lengths.ts';
 import { nodeName, reachName } from '../network/names.ts';
 import type { Network } from '../network/types.ts';
