@@ -5,6 +5,7 @@
  *   readSvg → layOut → assembleChip (with parseRunSheet) → buildNetwork → solveFlow → findAll → buildReport → writers
  */
 export { type Analysis, type AnalysisInput, analyse, type OnStage } from './analyse.ts';
+export type { RunNetwork } from './asked/run-network.ts';
 export { type CheckLayoutOptions, checkLayout, type LayoutFiles, type SourceFile } from './check-layout.ts';
 export { type Assembled, assembleChip, type ChipInput } from './chip/assemble.ts';
 export type {
@@ -78,7 +79,7 @@ export type {
   TubingPiece,
 } from './runsheet/types.ts';
 export { computeSection, type Given, type SectionInput, type SectionState } from './section/section.ts';
-export type { FlowNetwork, FlowRun, RunNetwork } from './solve/flow-network.ts';
+export type { FlowNetwork, FlowRun } from './solve/flow-network.ts';
 export { solveFlow } from './solve/flow-state.ts';
 export type { JointShares } from './solve/joint-share.ts';
 export { type FoundSettings, type FoundTarget, findSettings } from './solve/targets.ts';

@@ -1,9 +1,10 @@
+import { isAbove, isBelow } from '../asked/within.ts';
 import { grouped } from '../by-key.ts';
 import { acceptedName } from '../chip/accept.ts';
 import { UNACCEPTABLE_RULES } from '../runsheet/measures.ts';
 import { measureText, type Show } from '../runsheet/shown.ts';
 import type { AcceptEntry } from '../runsheet/types.ts';
-import { isAbove, isBelow, toFinding } from './rule.ts';
+import { toFinding } from './rule.ts';
 import type { Finding, NotRun } from './types.ts';
 import { listText } from './words.ts';
 

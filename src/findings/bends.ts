@@ -1,9 +1,10 @@
+import { isBelow } from '../asked/within.ts';
 import type { Pieces } from '../geometry/pieces.ts';
 import { middleOf } from './closest.ts';
 import type { FindingContext } from './context.ts';
 import { lineOf } from './painted.ts';
 import { channelPaths } from './paths.ts';
-import { isBelow, lengthMeasure, toFinding } from './rule.ts';
+import { lengthMeasure, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
 import { distanceText } from './words.ts';
 

@@ -1,3 +1,4 @@
+import { isBelow } from '../asked/within.ts';
 import type { Sourced } from '../chip/types.ts';
 import type { Network } from '../network/types.ts';
 import { tightBends } from './bends.ts';
@@ -5,7 +6,7 @@ import type { Place } from './closest.ts';
 import type { FindingContext } from './context.ts';
 import { notches } from './notches.ts';
 import { channelPaths, joinsOf, pointOn, sidePoint } from './paths.ts';
-import { isBelow, limitRule, type Rule, rule, toFinding } from './rule.ts';
+import { limitRule, type Rule, rule, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
 import { degreesText, limitText } from './words.ts';
 

@@ -1,4 +1,5 @@
 import Flatten from '@flatten-js/core';
+import { isBelow } from '../asked/within.ts';
 import { indexRings } from '../chip/rings.ts';
 import type { ChipEdge } from '../chip/types.ts';
 import { type BoxIndex, indexBoxes } from '../geometry/box-index.ts';
@@ -17,7 +18,6 @@ import {
 } from './closest.ts';
 import type { FindingContext } from './context.ts';
 import { lineOf, paintedParts } from './painted.ts';
-import { isBelow } from './rule.ts';
 
 /** A channel or well beyond the chip edge, or nearer to it than the margin. */
 export interface EdgeFault extends Place {

@@ -1,9 +1,9 @@
+import { isAbove } from '../asked/within.ts';
 import type { Sourced } from '../chip/types.ts';
 import type { FindingContext } from './context.ts';
 import { type EdgeFault, findEdgeFaults } from './edge-distances.ts';
 import {
   found,
-  isAbove,
   lengthMeasure,
   notRun,
   type Rule,

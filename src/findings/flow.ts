@@ -1,10 +1,11 @@
+import { isBelow } from '../asked/within.ts';
 import type { PortRun } from '../chip/types.ts';
 import { largestMagnitude } from '../runsheet/shown.ts';
 import type { FindingContext } from './context.ts';
 import { deadPartAt } from './dead-parts.ts';
 import { reachesAtNodes } from './openings.ts';
 import { perChannel } from './reaches.ts';
-import { found, isBelow, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
+import { found, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
 import { showFor } from './words.ts';
 
 /** Does fluid go where it is meant to, and does it go everywhere. */

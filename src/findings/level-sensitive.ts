@@ -1,3 +1,6 @@
+import { reachesOfChannel } from '../asked/reaches.ts';
+import { hasWindow } from '../asked/windows.ts';
+import { isAbove } from '../asked/within.ts';
 import { reachName } from '../network/names.ts';
 /**
  * How far a small change of liquid level moves the flows that have a window. A port's level h stands for ρ g h, and flows are linear in pressures, so the change
@@ -10,8 +13,8 @@ import { factorFlow, kindsOf, loadOf, prepareFlow } from '../solve/flow-state.ts
 import { solveGraph } from '../solve/graph.ts';
 import { gradientOfFlow } from '../solve/sensitivity.ts';
 import type { FindingContext } from './context.ts';
-import { middleOfReach, othersText, reachesOf, reachNames, worstReach } from './reaches.ts';
-import { found, isAbove, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
+import { middleOfReach, othersText, reachNames, worstReach } from './reaches.ts';
+import { found, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
 import { showFor } from './words.ts';
 
 export const LEVEL_CHANGE_M = 5e-3;
@@ -30,11 +33,7 @@ interface Move {
 function levelSensitive(context: FindingContext): RuleOutcome {
   const { chip, run, network, flow } = context;
   if (flow === null) return notRun('level-sensitive', 'nothing was solved');
-  const windowed = run.channels.map(
-    (settings) =>
-      settings !== null &&
-      [settings.flow, settings.wallShear, settings.residenceTime].some((window) => window !== null),
-  );
+  const windowed = run.channels.map(hasWindow);
   if (!windowed.includes(true)) return notRun('level-sensitive', 'no channel is given a window');
   const levels = run.ports.flatMap(({ condition }, port) =>
     condition.kind === 'head' || condition.kind === 'open' ? [port] : [],
@@ -49,7 +48,7 @@ function levelSensitive(context: FindingContext): RuleOutcome {
     chip.channels.flatMap((_, c) => {
       if (!windowed[c]) return [];
       const worst = worstReach(
-        reachesOf(context, c),
+        reachesOfChannel(context.network, c),
         (reach) => {
           const move = moves.get(reach);
           const flowM3s = Math.abs(flow.reachFlow[reach]);

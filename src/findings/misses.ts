@@ -1,3 +1,4 @@
+import { isAbove, isBelow } from '../asked/within.ts';
 import { grouped } from '../by-key.ts';
 import { minWallMm } from '../chip/limits.ts';
 import { distanceToPiece } from '../geometry/on-piece.ts';
@@ -9,7 +10,6 @@ import { gapOf, gapTo, gapToHole, lineOf, type Painted, paintedEnd, paintedHole 
 import { pairKey } from './pairs.ts';
 import { channelMember, type PartMember, portMember } from './parts.ts';
 import { isNearAlong, isNearPort, type OnCentreline, pointOn } from './paths.ts';
-import { isAbove, isBelow } from './rule.ts';
 import type { ThinWall } from './thin.ts';
 import { endPlace, type Tip, tipOfEnd, tipsOf } from './tips.ts';
 

@@ -1,6 +1,6 @@
+import { isBelow } from '../asked/within.ts';
 import type { Port } from '../chip/types.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
-import { isBelow } from './rule.ts';
 
 /** Ports whose rim comes within a distance of a point: a sweep over the ports sorted by x. */
 export function portsNear(context: FindingContext, x: number, y: number, withinMm: number): number[] {

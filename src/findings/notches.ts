@@ -1,9 +1,10 @@
+import { isAbove, isBelow } from '../asked/within.ts';
 import type { Network } from '../network/types.ts';
 import { channelOf } from './centrelines.ts';
 import type { FindingContext } from './context.ts';
 import { gapToHole } from './painted.ts';
 import { joinsOf } from './paths.ts';
-import { isAbove, isBelow, lengthMeasure, toFinding } from './rule.ts';
+import { lengthMeasure, toFinding } from './rule.ts';
 import { endPlace } from './tips.ts';
 import type { Finding } from './types.ts';
 import { degreesText, distanceText } from './words.ts';

@@ -1,3 +1,4 @@
+import { isAbove } from '../asked/within.ts';
 import { placeOn } from '../geometry/on-piece.ts';
 import { directionOf, type Pieces } from '../geometry/pieces.ts';
 import { closestPoints, type Place, pointLine, stretchWithin } from './closest.ts';
@@ -5,7 +6,6 @@ import { type FindingContext, oncePerContext } from './context.ts';
 import { onlyGrows } from './growth.ts';
 import { endMeets } from './meets.ts';
 import { lineOf } from './painted.ts';
-import { isAbove } from './rule.ts';
 import { extentOf, type Facing, groupStretches, rangeOf } from './stretches.ts';
 
 /** Two centrelines, or two stretches of one, drawn along each other as if they were one channel. */

@@ -1,8 +1,9 @@
+import { isAbove, isBelow } from '../asked/within.ts';
 import type { Port, Sourced } from '../chip/types.ts';
 import { Bounds } from '../geometry/bounds.ts';
 import { linesAlong } from './closest.ts';
 import type { FindingContext } from './context.ts';
-import { isAbove, isBelow, lengthMeasure, toFinding } from './rule.ts';
+import { lengthMeasure, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
 import { distanceText, limitText, listText, moveText, placeText } from './words.ts';
 

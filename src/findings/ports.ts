@@ -1,3 +1,4 @@
+import { isBelow } from '../asked/within.ts';
 import type { Port, Sourced } from '../chip/types.ts';
 import { closestPoints, type Line, lineBetween, middleOf } from './closest.ts';
 import { type FindingContext, oncePerContext } from './context.ts';
@@ -6,7 +7,7 @@ import { closePorts } from './near-ports.ts';
 import { portsOnOutlines } from './outlines.ts';
 import { gapToHole, lineOf } from './painted.ts';
 import { portGridFaults } from './port-grid.ts';
-import { isBelow, lengthMeasure, limitRule, type Rule, rule, toFinding } from './rule.ts';
+import { lengthMeasure, limitRule, type Rule, rule, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
 import { distanceText, limitText, listText, moveText } from './words.ts';
 

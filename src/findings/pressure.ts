@@ -1,6 +1,8 @@
+import { NEAR_VACUUM_PA } from '../asked/near-vacuum.ts';
+import { isAbove, isBelow } from '../asked/within.ts';
 import { nodeName } from '../network/names.ts';
 import type { FindingContext } from './context.ts';
-import { found, isAbove, isBelow, type Rule, type RuleOutcome, toFinding, withoutLimit } from './rule.ts';
+import { found, type Rule, type RuleOutcome, toFinding, withoutLimit } from './rule.ts';
 import type { Finding, NotRun } from './types.ts';
 import { limitText, listText, placeText, showFor } from './words.ts';
 
@@ -9,9 +11,6 @@ export const pressureRules: readonly Rule[] = [
   { names: ['over-pressure'], run: overPressure },
   { names: ['under-pressure'], run: underPressure },
 ];
-
-/** Gauge pressure at which water at 37 °C boils (its vapour pressure is 6.28 kPa); it gives off its gas well before that. */
-export const NEAR_VACUUM_PA = -95e3;
 
 function overPressure(context: FindingContext): RuleOutcome {
   const limit = context.run.limits.maxPressurePa;

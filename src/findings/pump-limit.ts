@@ -1,3 +1,4 @@
+import { isAbove, isBelow } from '../asked/within.ts';
 import { foundPumpLimits, givenPumpLimits, type PumpLimits } from '../chip/pump-limits.ts';
 import type { Sourced } from '../chip/types.ts';
 import type { Show } from '../runsheet/shown.ts';
@@ -5,7 +6,7 @@ import type { FoundTarget } from '../solve/targets.ts';
 import { lineAt } from '../solve/targets-limits.ts';
 import { targetValue } from '../solve/targets-wanted.ts';
 import type { FindingContext } from './context.ts';
-import { isAbove, isBelow, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
+import { notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
 import { limitText, listText, showFor } from './words.ts';
 

@@ -1,16 +1,9 @@
-import { itemsOf, toGroups } from '../groups.ts';
+import { reachesOfChannel } from '../asked/reaches.ts';
 import { reachName } from '../network/names.ts';
 import type { Network } from '../network/types.ts';
 import type { Place } from './closest.ts';
-import { type FindingContext, oncePerContext } from './context.ts';
+import type { FindingContext } from './context.ts';
 import type { Finding } from './types.ts';
-
-const byChannel = oncePerContext(({ network, chip }) => toGroups(chip.channels.length, network.reachChannel));
-
-/** The reaches of one channel, in drawn order. */
-export function reachesOf(context: FindingContext, channel: number): Int32Array {
-  return itemsOf(byChannel(context), channel);
-}
 
 /** The worst reach of a channel by some measure, and how many reaches are at fault. */
 export interface Worst<T> {
@@ -66,7 +59,11 @@ export function perChannel<T>(
 ): Finding[] {
   const { network, chip } = context;
   return chip.channels.flatMap((_, channel) => {
-    const worst = worstReach(reachesOf(context, channel), (reach) => look(reach, channel), badness);
+    const worst = worstReach(
+      reachesOfChannel(context.network, channel),
+      (reach) => look(reach, channel),
+      badness,
+    );
     if (worst === null) return [];
     const { reach, fault } = worst;
     const at = {

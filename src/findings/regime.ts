@@ -1,3 +1,5 @@
+import { reachesOfChannel } from '../asked/reaches.ts';
+import { isAbove, isBelow } from '../asked/within.ts';
 import { roomLengthM } from '../network/lengths.ts';
 import { nodeName, reachName } from '../network/names.ts';
 import { NODE_KINDS } from '../network/types.ts';
@@ -7,8 +9,8 @@ import { formatNumber } from '../runsheet/shown.ts';
 import { reachState } from '../solve/reach-state.ts';
 import type { FindingContext } from './context.ts';
 import { type Opening, openingsAt, reachesAtNodes } from './openings.ts';
-import { alongReach, middleOfReach, othersText, reachesOf, reachNames, worstReach } from './reaches.ts';
-import { found, isAbove, isBelow, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
+import { alongReach, middleOfReach, othersText, reachNames, worstReach } from './reaches.ts';
+import { found, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
 import { countText, limitText, showFor } from './words.ts';
 
@@ -40,7 +42,7 @@ function notLaminar(context: FindingContext): Finding[] {
   const show = showFor(context);
   return chip.channels.flatMap((_, c) => {
     const worst = worstReach(
-      reachesOf(context, c),
+      reachesOfChannel(context.network, c),
       (reach) => {
         const state = reachState(context, reach);
         return state !== null && isAbove(state.reynolds, limit.value) ? state : null;
@@ -87,7 +89,7 @@ function developingFlow(context: FindingContext): Finding[] {
   const atNodes = reachesAtNodes(context);
   return chip.channels.flatMap((_, c) => {
     const worst = worstReach(
-      reachesOf(context, c),
+      reachesOfChannel(context.network, c),
       (reach) => lookAt(reach),
       ({ developingM, limitM }) => developingM / limitM,
     );
@@ -175,7 +177,7 @@ function curvedFlow(context: FindingContext): Finding[] {
   const { chip, network } = context;
   return chip.channels.flatMap((_, c) => {
     const worst = worstReach(
-      reachesOf(context, c),
+      reachesOfChannel(context.network, c),
       (reach) => {
         const tightest = tightestBend(context, reach);
         const state = tightest === null ? null : reachState(context, reach);
@@ -237,7 +239,7 @@ function shortReach(context: FindingContext): Finding[] {
     const widthMm = channel.ductWidthMm;
     if (Number.isNaN(widthMm)) return [];
     const worst = worstReach(
-      reachesOf(context, c),
+      reachesOfChannel(context.network, c),
       (reach) => {
         if (flow !== null && flow.reachFlow[reach] === 0) return null;
         const joints = jointsOf(context, reach);

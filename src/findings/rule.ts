@@ -1,4 +1,3 @@
-import { LIMIT_SLACK } from '../chip/limits.ts';
 import type { Limits, Sourced } from '../chip/types.ts';
 import type { Line, Place } from './closest.ts';
 import type { FindingContext } from './context.ts';
@@ -104,11 +103,3 @@ export function limitRule(
 type LimitField = {
   [K in keyof Limits]: Limits[K] extends Sourced<number> | null ? K : never;
 }[keyof Limits];
-
-export function isBelow(value: number, limit: number): boolean {
-  return value < limit - LIMIT_SLACK * Math.abs(limit);
-}
-
-export function isAbove(value: number, limit: number): boolean {
-  return value > limit + LIMIT_SLACK * Math.abs(limit);
-}

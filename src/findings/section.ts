@@ -1,3 +1,4 @@
+import { isAbove, isBelow } from '../asked/within.ts';
 import { grouped } from '../by-key.ts';
 import type { Channel, Chip, Sourced } from '../chip/types.ts';
 import { meanRoofRise, risenResistanceFactor } from '../physics/roof.ts';
@@ -8,8 +9,6 @@ import { type FreeSpan, freeSpan } from './free-span.ts';
 import { type AtWorst, perChannel } from './reaches.ts';
 import {
   found,
-  isAbove,
-  isBelow,
   limitRule,
   notRun,
   type Rule,

@@ -1,12 +1,13 @@
-import type { Chip } from '../chip/types.ts';
+import { evenGroupsOf } from '../asked/even.ts';
+import { reachesOfChannel } from '../asked/reaches.ts';
+import { isAbove } from '../asked/within.ts';
 import { reachName } from '../network/names.ts';
-import { isPattern, matches } from '../runsheet/names.ts';
 import { formatNumber, formatShare } from '../runsheet/shown.ts';
 import { drivesOf } from '../solve/drives.ts';
 import { factorFlow, flowStateOf, kindsOf, prepareFlow } from '../solve/flow-state.ts';
 import type { FindingContext } from './context.ts';
-import { middleOfReach, reachesOf } from './reaches.ts';
-import { isAbove, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
+import { middleOfReach } from './reaches.ts';
+import { notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
 import { countText, listText, showFor } from './words.ts';
 
@@ -29,15 +30,12 @@ const MOST_RATIOS = 5;
 /** One finding per entry with `even`, at the channel that lies farthest from the mean of all that match its name. */
 function unevenFlow(context: FindingContext): RuleOutcome {
   const { chip, run, flow } = context;
-  const asked = Object.entries(run.sheet?.channels ?? {}).flatMap(([key, { even }]) =>
-    even === null ? [] : [{ key, even }],
-  );
+  const asked = evenGroupsOf(chip, run);
   if (asked.length === 0) return notRun('uneven-flow', 'no channels are asked to be even');
   if (flow === null) return notRun('uneven-flow', 'nothing was solved');
   const findings: Finding[] = [];
   const whys: string[] = [];
-  for (const { key, even } of asked) {
-    const members = membersOf(chip, key);
+  for (const { key, even, members } of asked) {
     const lanes = members.flatMap((channel) => laneOf(context, channel) ?? []);
     const unknown = members.length - lanes.length;
     if (members.length < 2) whys.push(`${key} is one channel, which has nothing to be even with`);
@@ -52,21 +50,12 @@ function unevenFlow(context: FindingContext): RuleOutcome {
   return { findings, notRun: whys.map((why) => ({ rule: 'uneven-flow', why })) };
 }
 
-/** Every channel whose drawn name matches, whatever other entry it has. */
-export function membersOf({ channels }: Pick<Chip, 'channels'>, key: string): number[] {
-  const name = key.trim();
-  return channels.flatMap(({ drawnName }, channel) => {
-    if (drawnName === null) return [];
-    return (isPattern(key) ? matches(key, drawnName) : drawnName === name) ? [channel] : [];
-  });
-}
-
 function laneOf(context: FindingContext, channel: number): Lane | null {
   const { chip, flow } = context;
   if (flow === null) return null;
   let most = -1;
   let dropPa = 0;
-  for (const reach of reachesOf(context, channel)) {
+  for (const reach of reachesOfChannel(context.network, channel)) {
     const flowM3s = Math.abs(flow.reachFlow[reach]);
     if (Number.isNaN(flowM3s)) return null;
     dropPa += Math.abs(flow.reachPressureDrop[reach]);

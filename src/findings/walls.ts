@@ -1,3 +1,4 @@
+import { isBelow } from '../asked/within.ts';
 import { grouped, remembered } from '../by-key.ts';
 import { minWallMm } from '../chip/limits.ts';
 import type { Channel, Sourced } from '../chip/types.ts';
@@ -9,7 +10,7 @@ import { replacesWall } from './misses.ts';
 import { closePorts } from './near-ports.ts';
 import { doubleStrokes } from './overlaps.ts';
 import { pairKey } from './pairs.ts';
-import { found, isBelow, lengthMeasure, notRun, type Rule, toFinding, withoutLimit } from './rule.ts';
+import { found, lengthMeasure, notRun, type Rule, toFinding, withoutLimit } from './rule.ts';
 import type { Wall } from './stretches.ts';
 import { findThinWalls, type ThinWall } from './thin.ts';
 import type { Finding } from './types.ts';

@@ -1,3 +1,7 @@
+import { passagesOf } from '../asked/passages.ts';
+import { reachesOfChannel } from '../asked/reaches.ts';
+import { wallsOf } from '../asked/windows.ts';
+import { isAbove, isBelow } from '../asked/within.ts';
 import type { Channel } from '../chip/types.ts';
 import { roomLengthM } from '../network/lengths.ts';
 import { reachName } from '../network/names.ts';
@@ -16,8 +20,8 @@ import { formatNumber, formatShare, type Shown } from '../runsheet/shown.ts';
 import type { ChannelEntry, ShearWindow, Window } from '../runsheet/types.ts';
 import { reachState } from '../solve/reach-state.ts';
 import type { FindingContext } from './context.ts';
-import { middleOfReach, othersText, reachesOf, reachNames, type Worst, worstReach } from './reaches.ts';
-import { isAbove, isBelow, notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
+import { middleOfReach, othersText, reachNames, type Worst, worstReach } from './reaches.ts';
+import { notRun, type Rule, type RuleOutcome, toFinding } from './rule.ts';
 import type { Finding } from './types.ts';
 import { listText, showFor } from './words.ts';
 
@@ -54,7 +58,7 @@ function windowRule<W extends Window>(
         const window = settings === null ? null : windowOf(settings);
         if (settings === null || window === null) return;
         asked++;
-        const all = Array.from(reachesOf(context, c));
+        const all = Array.from(reachesOfChannel(context.network, c));
         const reaches = all.filter((reach) => reachState(context, reach) !== null);
         if (reaches.length < all.length || all.length === 0) unknown.push(channel.name);
         for (const finding of judge(context, { channel, settings, window, reaches })) findings.push(finding);
@@ -129,10 +133,6 @@ function shearFindings(context: FindingContext, watched: Watched<ShearWindow>): 
         );
   if (high !== null && max !== null) findings.push(shearFinding(context, watched, high, 'above', max));
   return findings;
-}
-
-function wallsOf({ walls }: ChannelEntry): readonly Wall[] {
-  return walls === 'all' ? ['floor', 'side'] : ['floor'];
 }
 
 function shearFinding(
@@ -225,7 +225,11 @@ interface Passage {
 
 function residenceFindings(context: FindingContext, watched: Watched<Window>): Finding[] {
   const { min, max } = watched.window;
-  const passages = passagesOf(context, watched.reaches);
+  const { network, flow } = context;
+  if (flow === null) return [];
+  const passages = passagesOf(network, watched.reaches, flow.reachFlow).map((reaches) =>
+    passageOf(context, reaches),
+  );
   const findings: Finding[] = [];
   if (min !== null) {
     const faults = passages.filter(({ fastestS }) => isBelow(fastestS, min));
@@ -238,28 +242,6 @@ function residenceFindings(context: FindingContext, watched: Watched<Window>): F
     if (worst !== null) findings.push(residenceFinding(context, worst, faults, 'above', max));
   }
   return findings;
-}
-
-/**
- * Consecutive reaches that join end to start are passed one after the other when all flow the same way along the drawing;
- * else each stands for itself.
- */
-function passagesOf(context: FindingContext, reaches: readonly number[]): Passage[] {
-  const { network, flow } = context;
-  if (flow === null) return [];
-  const passages: Passage[] = [];
-  for (let k = 0; k < reaches.length; ) {
-    let end = k + 1;
-    while (end < reaches.length && network.reachTo[reaches[end - 1]] === network.reachFrom[reaches[end]])
-      end++;
-    const chain = reaches.slice(k, end);
-    const sign = Math.sign(flow.reachFlow[chain[0]]);
-    const isOneWay = sign !== 0 && chain.every((reach) => Math.sign(flow.reachFlow[reach]) === sign);
-    for (const group of isOneWay ? [chain] : chain.map((reach) => [reach]))
-      passages.push(passageOf(context, group));
-    k = end;
-  }
-  return passages;
 }
 
 function passageOf(context: FindingContext, reaches: readonly number[]): Passage {

@@ -1,3 +1,4 @@
+import { hasWindow } from '../asked/windows.ts';
 import { reachName } from '../network/names.ts';
 import { formatNumber, type Unit } from '../runsheet/shown.ts';
 import { type LabelGround, type LabelWish, placeLabels } from './label-placement.ts';
@@ -7,7 +8,6 @@ import { type Box, type ChipGeometry, stripHalfWidthMm } from './map-geometry.ts
 import { MAP_QUANTITIES } from './map-quantities.ts';
 import type { MapDrawing, MapHole, MapLabel, MapOptions } from './map-types.ts';
 import { quantityTexts } from './quantities.ts';
-import { hasWindow } from './reach-values.ts';
 import type { ReportedCase } from './report.ts';
 import { portQuantity } from './result-schema.ts';
 

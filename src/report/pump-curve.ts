@@ -1,7 +1,7 @@
+import type { RunNetwork } from '../asked/run-network.ts';
 import { flowForShear, type ShearAt } from '../physics/duct-state.ts';
 import type { Show, Unit } from '../runsheet/shown.ts';
 import type { PumpLimitEntry, Window } from '../runsheet/types.ts';
-import type { RunNetwork } from '../solve/flow-network.ts';
 import type { FoundTarget } from '../solve/targets.ts';
 import { lineAt, settingsFor } from '../solve/targets-limits.ts';
 import { targetValue } from '../solve/targets-wanted.ts';

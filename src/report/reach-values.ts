@@ -1,3 +1,4 @@
+import { hasWindow } from '../asked/windows.ts';
 import { roomLengthM } from '../network/lengths.ts';
 import { reachName } from '../network/names.ts';
 import { residenceTime, volumeOf } from '../physics/duct-state.ts';
@@ -91,14 +92,6 @@ export function outsideWindows({
   return (channel, reach) => channels.has(channel) || reaches.has(reach);
 }
 
-/** Whether a window is asked of a channel. */
-export function hasWindow(settings: ChannelEntry | null): boolean {
-  return (
-    settings !== null &&
-    (settings.wallShear !== null || settings.residenceTime !== null || settings.flow !== null)
-  );
-}
-
 const STYLE = { digits: 4, most: '≤', least: '≥' } as const;
 
 /** The windows of a channel as text: "shear 0.05 to 0.5 Pa over 80 %". */
@@ -122,7 +115,7 @@ export function windowCell(one: ReportedCase): (row: Pick<ReachRow, 'channel' | 
   const { network, run, show } = one;
   const windowed = new Map<string, ChannelEntry>();
   run.channels.forEach((settings, c) => {
-    if (settings !== null && hasWindow(settings)) windowed.set(network.chip.channels[c].name, settings);
+    if (hasWindow(settings)) windowed.set(network.chip.channels[c].name, settings);
   });
   const outside = outsideWindows(one);
   return (row) => {

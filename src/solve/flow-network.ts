@@ -13,9 +13,3 @@ export type FlowNetwork = Pick<
 export type FlowRun = Pick<Run, 'fluid'> & {
   readonly ports: readonly Pick<PortRun, 'condition' | 'tubing'>[];
 };
-
-/** A network and how it is run: what analyses, findings and reports have in common. */
-export interface RunNetwork {
-  readonly network: Network;
-  readonly run: Run;
-}

@@ -1,6 +1,7 @@
+import type { RunNetwork } from '../asked/run-network.ts';
+import { hasWindow } from '../asked/windows.ts';
 import type { Network } from '../network/types.ts';
 import type { PortDrive } from './drives.ts';
-import type { RunNetwork } from './flow-network.ts';
 import { type FlowFactor, factorFlow, flowStateOf } from './flow-state.ts';
 import { type GraphFlow, type GraphLoad, solveGraph } from './graph.ts';
 import type { FlowState } from './types.ts';
@@ -196,7 +197,7 @@ function movedByAdjoint(
   }
   const watched: number[] = [];
   for (let r = 0; r < reachCount; r++)
-    if (run.channels[reachChannel[r]] !== null && flow.reachFlow[r] !== 0) watched.push(r);
+    if (hasWindow(run.channels[reachChannel[r]]) && flow.reachFlow[r] !== 0) watched.push(r);
   for (const r of watched.slice(0, solvesFor(mostWork)))
     moved.reachFlow[r] = movedBy({ source: { edge: r, pressure: 1 } });
   return moved;

@@ -1,6 +1,6 @@
+import type { RunNetwork } from '../asked/run-network.ts';
 import { channelForm } from '../chip/sections.ts';
 import { type DuctState, ductState } from '../physics/duct-state.ts';
-import type { RunNetwork } from './flow-network.ts';
 import type { FlowState } from './types.ts';
 
 /** What the flow does in one reach; null where its section or its flow is not known. Cheap: made on demand. */

@@ -1,7 +1,6 @@
-import { refuse } from '../chip/complain.ts';
+import type { RunNetwork } from '../asked/run-network.ts';
+import { nodeOfTarget, reachOfTarget, refuseTarget } from '../asked/targets.ts';
 import { channelForm } from '../chip/sections.ts';
-import { refuseSeveral } from '../chip/targets.ts';
-import { findNodes } from '../network/find-node.ts';
 import { roomLengthM } from '../network/lengths.ts';
 import { nodeName, reachName } from '../network/names.ts';
 import type { Network } from '../network/types.ts';
@@ -15,10 +14,8 @@ import {
   volumeOf,
   wallShear,
 } from '../physics/duct-state.ts';
-import { nearest } from '../runsheet/nearest.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { RunSheet, TargetEntry } from '../runsheet/types.ts';
-import type { RunNetwork } from './flow-network.ts';
 import type { FlowState } from './types.ts';
 
 /** What is looked at in a flow state. All three are linear in every port's setting. */
@@ -85,11 +82,6 @@ export function readTargets({ network, run }: RunNetwork): readonly Wanted[] {
     const drive = run.ports[port].condition.kind === 'flow' ? 'flow' : 'pressure';
     return { index, entry, observed, measure, port, drive, name: nameOf(network, observed) };
   });
-}
-
-/** Stops at a target, with its line: `culture.run.yaml:31: targets[0]: …`. */
-export function refuseTarget(sheet: RunSheet, index: number, what: string): never {
-  return refuse(sheet, ['targets', index], `targets[${index}]: ${what}`);
 }
 
 /** NaN where it can't be known. */
@@ -179,7 +171,7 @@ function refuseSharedPorts(sheet: RunSheet): void {
 function observedOf(network: Network, sheet: RunSheet, entry: TargetEntry, index: number): Observed {
   switch (entry.on) {
     case 'channel':
-      return { kind: 'reach', reach: reachOf(network, sheet, entry, index) };
+      return { kind: 'reach', reach: reachOfTarget(network, sheet, entry) };
     case 'port': {
       const port = network.chip.ports.findIndex(({ drawnName }) => drawnName === entry.name);
       if (port < 0) refuseTarget(sheet, index, `port: the drawing has no port ${quote(entry.name)}`);
@@ -187,65 +179,10 @@ function observedOf(network: Network, sheet: RunSheet, entry: TargetEntry, index
       return { kind: 'port', port };
     }
     case 'node':
-      return { kind: 'node', node: nodeOf(network, sheet, entry.name, index) };
+      return { kind: 'node', node: nodeOfTarget(network, sheet, entry) };
     default:
       return entry.on satisfies never;
   }
-}
-
-const MOST_LISTED = 12;
-
-function reachOf(network: Network, sheet: RunSheet, { name, reach }: TargetEntry, index: number): number {
-  const { channels } = network.chip;
-  const reaches: number[] = [];
-  for (let r = 0; r < network.reachCount; r++)
-    if (channels[network.reachChannel[r]].drawnName === name) reaches.push(r);
-  if (reaches.length === 0) {
-    refuseTarget(
-      sheet,
-      index,
-      `channel: ${quote(name)} has no reach that resists flow: all of it lies in wells or joints, or was left out`,
-    );
-  }
-  const names = reaches.map((r) => reachName(network, r));
-  if (reach === null) {
-    if (reaches.length === 1) return reaches[0];
-    refuseTarget(
-      sheet,
-      index,
-      `channel ${quote(name)} has ${reaches.length} reaches; add reach: and one of ${listed(names)}`,
-    );
-  }
-  const found = names.indexOf(reach);
-  if (found >= 0) return reaches[found];
-  const near = nearest(reach, names);
-  return refuseTarget(
-    sheet,
-    index,
-    `reach: channel ${quote(name)} has no reach ${quote(reach)}; ${near === null ? `it has ${listed(names)}` : `did you mean ${quote(near)}?`}`,
-  );
-}
-
-function nodeOf(network: Network, sheet: RunSheet, name: string, index: number): number {
-  const port = network.chip.ports.findIndex(({ drawnName }) => drawnName === name);
-  if (port >= 0) return network.portNode[port];
-  const found = findNodes(network, name);
-  if (found.length === 1) return found[0];
-  if (found.length > 1)
-    refuseSeveral(
-      sheet,
-      ['targets', index, 'node'],
-      name,
-      'node',
-      found.map((n) => nodeName(network, n)),
-    );
-  const names = Array.from({ length: network.nodeCount }, (_, node) => nodeName(network, node));
-  const near = nearest(name, names);
-  return refuseTarget(
-    sheet,
-    index,
-    `node: the network has no node ${quote(name)}; ${near === null ? `it has ${listed(names)}` : `did you mean ${quote(near)}?`} (the maps of the report show them)`,
-  );
 }
 
 function measureOf(
@@ -314,10 +251,4 @@ function nameOf(network: Network, observed: Observed): string {
     default:
       return observed satisfies never;
   }
-}
-
-function listed(names: readonly string[]): string {
-  const more = names.length - MOST_LISTED;
-  const first = names.slice(0, MOST_LISTED).map((name) => quote(name));
-  return more > 0 ? `${first.join(', ')} and ${more} more` : first.join(', ');
 }

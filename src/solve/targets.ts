@@ -5,6 +5,9 @@
  * Wall shear, velocity and residence time say how much flows and not which way. The way is that in which the reach flows under the run sheet as written; where
  * nothing flows there, that in which `by` drives it by pushing into the chip, or by drawing out of it where it says `expect: out`.
  */
+
+import type { RunNetwork } from '../asked/run-network.ts';
+import { refuseTarget } from '../asked/targets.ts';
 import { remembered } from '../by-key.ts';
 import { foundPumpLimits, pumpLimitValues } from '../chip/pump-limits.ts';
 import type { Run } from '../chip/types.ts';
@@ -13,7 +16,6 @@ import type { Network } from '../network/types.ts';
 import { quote } from '../runsheet/quote.ts';
 import type { PortCondition, RunSheet } from '../runsheet/types.ts';
 import { drivesOf, type PortDrive } from './drives.ts';
-import type { RunNetwork } from './flow-network.ts';
 import {
   type FlowFactor,
   factorFlow,
@@ -37,7 +39,6 @@ import {
   observedFor,
   observedWithin,
   readTargets,
-  refuseTarget,
   targetText,
   targetValue,
   type Wanted,

@@ -1,8 +1,8 @@
-import { isAbove } from '../findings/rule.ts';
-import { membersOf } from '../findings/uneven.ts';
-import { acceptedLimits } from './accepted.ts';
+import { acceptedLimits } from '../asked/accepted.ts';
+import { evenGroupsOf } from '../asked/even.ts';
+import { reachesOfChannel } from '../asked/reaches.ts';
+import { isAbove } from '../asked/within.ts';
 import type { ChipState, SpreadModel } from './model.ts';
-import { channelReaches } from './passages.ts';
 
 /** One group of channels that are to be even, and how often they were not. */
 export interface EvenGroup {
@@ -33,13 +33,11 @@ interface Group {
 export function evennessOf(model: SpreadModel): Evenness {
   const { network, run, nominal } = model;
   const { chip } = network;
-  const groups = Object.entries(run.sheet?.channels ?? {}).flatMap(([key, { even }]): Group[] => {
-    if (even === null) return [];
-    const members = membersOf(chip, key);
+  const groups = evenGroupsOf(chip, run).flatMap(({ key, even, members }): Group[] => {
     const names = members.map((channel) => chip.channels[channel].name);
     const { max } = acceptedLimits(model, 'uneven-flow', names, '', null, even);
     if (members.length < 2 || max === null) return [];
-    return [{ key, lanes: members.map((channel) => [...channelReaches(network, channel)]), most: max }];
+    return [{ key, lanes: members.map((channel) => [...reachesOfChannel(network, channel)]), most: max }];
   });
   const isKnown = ({ lanes }: Group): boolean =>
     lanes.every(

@@ -1,10 +1,10 @@
-import { isAbove } from '../findings/rule.ts';
+import { acceptedLimits } from '../asked/accepted.ts';
+import { reachesOfChannel } from '../asked/reaches.ts';
+import { isAbove } from '../asked/within.ts';
 import { reachName } from '../network/names.ts';
-import { acceptedLimits } from './accepted.ts';
 import { type EvenGroup, evennessOf } from './evenness.ts';
 import type { ChipState, SpreadModel } from './model.ts';
 import { ductStateOf, isKept, type Output, outputValue, timeOutputs } from './outputs.ts';
-import { channelReaches } from './passages.ts';
 
 /**
  * Whether a state keeps every window and limit that flow decides: the outputs' own, and the Reynolds number of every reach.
@@ -85,7 +85,7 @@ function regrouping(
     ofChannel.set(channel, [...(ofChannel.get(channel) ?? []), i]);
   }
   const watched = [...ofChannel].flatMap(([channel, members]) => {
-    const reaches = channelReaches(network, channel);
+    const reaches = reachesOfChannel(network, channel);
     return reaches.length > 1 && reaches.every((reach) => !Number.isNaN(nominal.reachFlow[reach]))
       ? [{ channel, members, reaches }]
       : [];

@@ -4,6 +4,7 @@
  * factorisation into the same memory and one solve.
  */
 
+import type { RunNetwork } from '../asked/run-network.ts';
 import { remembered } from '../by-key.ts';
 import { densityAt, viscosityAt } from '../chip/fluid.ts';
 import type { Fluid } from '../chip/types.ts';
@@ -14,7 +15,6 @@ import { type FlowingFluid, resistancePerLength } from '../physics/duct-state.ts
 import { type Profile, sectionForm } from '../physics/section.ts';
 import { tubeResistance } from '../physics/tube.ts';
 import { drivesOf, type PortDrive } from '../solve/drives.ts';
-import type { RunNetwork } from '../solve/flow-network.ts';
 import {
   type FlowFactor,
   factorFlow,

@@ -1,8 +1,11 @@
-import { refuseSeveral } from '../chip/targets.ts';
-import { InputError } from '../errors.ts';
-import { NEAR_VACUUM_PA } from '../findings/pressure.ts';
-import { isAbove, isBelow } from '../findings/rule.ts';
-import { findNodes } from '../network/find-node.ts';
+import { acceptedLimits, type KeptLimits } from '../asked/accepted.ts';
+import { NEAR_VACUUM_PA } from '../asked/near-vacuum.ts';
+import { passagesOf } from '../asked/passages.ts';
+import { reachesOfChannel } from '../asked/reaches.ts';
+import type { RunNetwork } from '../asked/run-network.ts';
+import { nodeOfTarget, reachOfTarget } from '../asked/targets.ts';
+import { hasWindow, wallsOf } from '../asked/windows.ts';
+import { isAbove, isBelow } from '../asked/within.ts';
 import { roomLengthM } from '../network/lengths.ts';
 import { nodeName, reachName } from '../network/names.ts';
 import type { Network } from '../network/types.ts';
@@ -18,14 +21,9 @@ import {
   type Wall,
   wallShear,
 } from '../physics/duct-state.ts';
-import { nearest } from '../runsheet/nearest.ts';
-import { quote } from '../runsheet/quote.ts';
 import type { ChannelEntry, PumpLimitEntry, ShearWindow, TargetEntry } from '../runsheet/types.ts';
-import type { RunNetwork } from '../solve/flow-network.ts';
 import type { FlowState } from '../solve/types.ts';
-import { acceptedLimits, type KeptLimits } from './accepted.ts';
 import type { ChipState, SpreadModel } from './model.ts';
-import { channelReaches, passagesOf } from './passages.ts';
 
 /** What a number is computed from. Flows of reaches count in the direction of the nominal flow. */
 export type Subject =
@@ -82,7 +80,7 @@ export interface Output {
 
 /**
  * What is followed: flow and pressure of every port, everything about every channel with a window, every target; each once.
- * @throws InputError for a target at a node that the network lacks
+ * @throws InputError for a target on no reach or node, or on several
  */
 export function listOutputs(at: RunNetwork, nominal: FlowState): readonly Output[] {
   const outputs = new Map<string, Output>();
@@ -94,7 +92,7 @@ export function listOutputs(at: RunNetwork, nominal: FlowState): readonly Output
   for (const output of portOutputs(at)) add(output);
   for (const output of targetOutputs(at, nominal)) add(output);
   at.run.channels.forEach((settings, channel) => {
-    if (settings !== null) for (const output of windowOutputs(at, nominal, channel, settings)) add(output);
+    if (hasWindow(settings)) for (const output of windowOutputs(at, nominal, channel, settings)) add(output);
   });
   return [...outputs.values()];
 }
@@ -111,12 +109,10 @@ function bothAsked(a: Output, b: Output): Output {
 }
 
 /** Nodes of the network whose pressure is an output. */
-export function pressureNodesOf(at: RunNetwork): readonly number[] {
-  const { targets } = at.run.sheet ?? { targets: [] };
-  return [
-    ...at.network.portNode,
-    ...targets.flatMap((target) => (target.on === 'node' ? [nodeOf(at, target)] : [])),
-  ];
+export function pressureNodesOf({ network, run: { sheet } }: RunNetwork): readonly number[] {
+  if (sheet === null) return [...network.portNode];
+  const named = sheet.targets.filter(({ on }) => on === 'node');
+  return [...network.portNode, ...named.map((target) => nodeOfTarget(network, sheet, target))];
 }
 
 /** NaN where the number does not exist. */
@@ -257,10 +253,9 @@ function windowOutputs(
   channel: number,
   settings: ChannelEntry,
 ): Output[] {
-  const { wallShear, residenceTime, flow, walls } = settings;
-  if (wallShear === null && residenceTime === null && flow === null) return [];
   const { network } = at;
-  const reaches = [...channelReaches(network, channel)];
+  const { wallShear, flow } = settings;
+  const reaches = [...reachesOfChannel(network, channel)];
   const { name: channelName } = network.chip.channels[channel];
   const outputs: Output[] = [];
   for (const reach of reaches) {
@@ -271,8 +266,7 @@ function windowOutputs(
       ...flowLimits,
       hasWindow: flow !== null,
     });
-    for (const wall of walls === 'all' ? (['floor', 'side'] as const) : (['floor'] as const))
-      outputs.push(...shearOutputs(at, reach, wall, wallShear, names));
+    for (const wall of wallsOf(settings)) outputs.push(...shearOutputs(at, reach, wall, wallShear, names));
   }
   outputs.push(...timeOutputs(at, channel, nominal.reachFlow));
   return outputs;
@@ -283,7 +277,7 @@ export function timeOutputs(at: RunNetwork, channel: number, reachFlow: Float64A
   const { network, run } = at;
   const { name } = network.chip.channels[channel];
   const window = run.channels[channel]?.residenceTime ?? null;
-  const reaches = [...channelReaches(network, channel)];
+  const reaches = [...reachesOfChannel(network, channel)];
   return passagesOf(network, reaches, reachFlow).flatMap((passage): Output[] => {
     const names = [...passage.map((r) => reachName(network, r)), name];
     const { min, max } = acceptedLimits(
@@ -380,7 +374,9 @@ function timeOutput(network: Network, reaches: readonly number[], at: 'mean' | '
 function targetOutputs(at: RunNetwork, nominal: FlowState): Output[] {
   const { network, run } = at;
   const { chip } = network;
-  return (run.sheet?.targets ?? []).flatMap((target): Output[] => {
+  const { sheet } = run;
+  if (sheet === null) return [];
+  return sheet.targets.flatMap((target): Output[] => {
     switch (target.on) {
       case 'port': {
         const port = chip.ports.findIndex(({ drawnName }) => drawnName === target.name);
@@ -393,7 +389,7 @@ function targetOutputs(at: RunNetwork, nominal: FlowState): Output[] {
         return wanted.map((output) => ({ ...output, ...askedByTarget(target) }));
       }
       case 'node': {
-        const node = nodeOf(at, target);
+        const node = nodeOfTarget(network, sheet, target);
         return [
           {
             ...PLAIN,
@@ -406,11 +402,10 @@ function targetOutputs(at: RunNetwork, nominal: FlowState): Output[] {
           },
         ];
       }
-      case 'channel':
-        return targetReaches(at, target).map((reach) => ({
-          ...reachTarget(network, nominal, reach, target),
-          ...askedByTarget(target),
-        }));
+      case 'channel': {
+        const reach = reachOfTarget(network, sheet, target);
+        return [{ ...reachTarget(network, nominal, reach, target), ...askedByTarget(target) }];
+      }
       default:
         return target.on satisfies never;
     }
@@ -448,59 +443,6 @@ function reachTarget(network: Network, nominal: FlowState, reach: number, target
     default:
       return target.quantity satisfies never;
   }
-}
-
-/** The reach named, else every reach of the channel. */
-function targetReaches(at: RunNetwork, target: TargetEntry): number[] {
-  const { network } = at;
-  const { chip } = network;
-  const reaches = chip.channels.flatMap(({ drawnName }, channel) =>
-    drawnName === target.name ? [...channelReaches(network, channel)] : [],
-  );
-  if (target.reach === null) return reaches;
-  const named = reaches.filter((reach) => reachName(network, reach) === target.reach);
-  if (named.length === 0)
-    refuseTarget(
-      at,
-      target,
-      'reach',
-      target.reach,
-      reaches.map((r) => reachName(network, r)),
-    );
-  return named;
-}
-
-function nodeOf(at: RunNetwork, target: TargetEntry): number {
-  const { network } = at;
-  const found = findNodes(network, target.name);
-  if (found.length === 1) return found[0];
-  const { sheet } = at.run;
-  if (sheet !== null && found.length > 1)
-    refuseSeveral(
-      sheet,
-      ['targets', target.index, 'node'],
-      target.name,
-      'node',
-      found.map((n) => nodeName(network, n)),
-    );
-  const names = Array.from({ length: network.nodeCount }, (_, node) => nodeName(network, node));
-  return refuseTarget(at, target, 'node', target.name, names);
-}
-
-function refuseTarget(
-  { network, run }: RunNetwork,
-  { line }: TargetEntry,
-  what: string,
-  name: string,
-  candidates: readonly string[],
-): never {
-  const near = nearest(name, candidates);
-  const hint =
-    near === null ? `its ${what}s are ${candidates.slice(0, 8).join(', ')}` : `did you mean ${quote(near)}?`;
-  throw new InputError(
-    `${run.sheet?.file ?? network.chip.file}:${line}`,
-    `targets: the network has no ${what} ${quote(name)} there; ${hint}`,
-  );
 }
 
 /** Whether a value keeps what is asked of it, with the slack of the rules. A channel's window on a flow is one on its magnitude, whatever its direction. */

@@ -3,8 +3,8 @@
  * low-discrepancy sample of the whole nonlinear model.
  */
 
+import type { RunNetwork } from '../asked/run-network.ts';
 import type { Tolerances } from '../runsheet/types.ts';
-import type { RunNetwork } from '../solve/flow-network.ts';
 import { worstCorner } from './corner.ts';
 import { type Derivatives, derivativesOf, firstOrder } from './first-order.ts';
 import { type Judge, makeJudge } from './judge.ts';

@@ -1,8 +1,8 @@
+import type { RunNetwork } from '../asked/run-network.ts';
 import { feelsTemperature } from '../chip/fluid.ts';
 import type { Chip, PortRun } from '../chip/types.ts';
 import { layerKey } from '../runsheet/names.ts';
 import type { Tolerance, Tolerances } from '../runsheet/types.ts';
-import type { RunNetwork } from '../solve/flow-network.ts';
 import { normalQuantile } from './normal-quantile.ts';
 
 /** One entry of the run sheet's tolerances at work: what the shares of variance are counted by. */

@@ -1,12 +1,12 @@
 import { readFileSync } from 'node:fs';
 import { performance } from 'node:perf_hooks';
+import type { RunNetwork } from '../../src/asked/run-network.ts';
 import { assembleChip } from '../../src/chip/assemble.ts';
 import { layOut } from '../../src/layout/layout.ts';
 import { buildNetwork } from '../../src/network/build.ts';
 import { parseRunSheet } from '../../src/runsheet/parse.ts';
 import type { Tolerances } from '../../src/runsheet/types.ts';
 import { drivesOf } from '../../src/solve/drives.ts';
-import type { RunNetwork } from '../../src/solve/flow-network.ts';
 import { factorFlow, flowStateOf, kindsOf, prepareFlow } from '../../src/solve/flow-state.ts';
 import { factorGraph, solveGraph } from '../../src/solve/graph.ts';
 import { spreadOf } from '../../src/spread/spread.ts';

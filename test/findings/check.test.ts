@@ -1,7 +1,8 @@
 import { describe, expect, it } from 'vitest';
+import { isAbove, isBelow } from '../../src/asked/within.ts';
 import { findAll } from '../../src/findings/check.ts';
 import type { FindingContext } from '../../src/findings/context.ts';
-import { found, isAbove, isBelow, notRun, type Rule, toFinding } from '../../src/findings/rule.ts';
+import { found, notRun, type Rule, toFinding } from '../../src/findings/rule.ts';
 import { RULES } from '../../src/findings/rules.ts';
 import type { Severity } from '../../src/findings/types.ts';
 import { buildNetwork } from '../../src/network/build.ts';

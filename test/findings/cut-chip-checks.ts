@@ -1,7 +1,7 @@
 import { expect } from 'vitest';
+import type { RunNetwork } from '../../src/asked/run-network.ts';
 import { findAll } from '../../src/findings/check.ts';
 import type { Finding } from '../../src/findings/types.ts';
-import type { RunNetwork } from '../../src/solve/flow-network.ts';
 import { type CutChip, forkChip, netChip, randomOf } from './cut-chips.ts';
 import { contextOf } from './findings-of.ts';
 

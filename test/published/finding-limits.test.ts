@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
+import { NEAR_VACUUM_PA } from '../../src/asked/near-vacuum.ts';
 import { minWallM, resolveLeastWall, resolveLimits } from '../../src/chip/limits.ts';
-import { NEAR_VACUUM_PA } from '../../src/findings/pressure.ts';
 import { CURVED_FLOW_DEAN } from '../../src/physics/dean.ts';
 import { meanRoofRise } from '../../src/physics/roof.ts';
 import { isotropicSection } from '../../src/physics/section.ts';

@@ -1,6 +1,6 @@
 import { expect } from 'vitest';
+import type { RunNetwork } from '../../src/asked/run-network.ts';
 import { drivesOf } from '../../src/solve/drives.ts';
-import type { RunNetwork } from '../../src/solve/flow-network.ts';
 import { factorFlow, flowStateOf, kindsOf, prepareFlow, solveFlow } from '../../src/solve/flow-state.ts';
 import { type JointShares, jointShares } from '../../src/solve/joint-share.ts';
 import type { FlowState } from '../../src/solve/types.ts';

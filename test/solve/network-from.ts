@@ -1,8 +1,8 @@
+import type { RunNetwork } from '../../src/asked/run-network.ts';
 import { assembleChip } from '../../src/chip/assemble.ts';
 import { layOut } from '../../src/layout/layout.ts';
 import { buildNetwork } from '../../src/network/build.ts';
 import { parseRunSheet } from '../../src/runsheet/parse.ts';
-import type { RunNetwork } from '../../src/solve/flow-network.ts';
 import { readSvg } from '../../src/svg/read.ts';
 
 /** The network of a drawing and its run under a run sheet, by the whole chain of steps. */

@@ -1,10 +1,10 @@
+import type { RunNetwork } from '../../src/asked/run-network.ts';
 import { densityAt, feelsTemperature, viscosityAt } from '../../src/chip/fluid.ts';
 import { SectionList } from '../../src/chip/sections.ts';
 import type { Chip, Fluid, Run } from '../../src/chip/types.ts';
 import { findAll } from '../../src/findings/check.ts';
 import { RULES } from '../../src/findings/rules.ts';
 import type { TargetEntry } from '../../src/runsheet/types.ts';
-import type { RunNetwork } from '../../src/solve/flow-network.ts';
 import { solveFlow } from '../../src/solve/flow-state.ts';
 import { observe, readTargets, targetValue } from '../../src/solve/targets-wanted.ts';
 import type { FlowState } from '../../src/solve/types.ts';

@@ -1,9 +1,9 @@
+import type { RunNetwork } from '../../src/asked/run-network.ts';
 import { assembleChip } from '../../src/chip/assemble.ts';
 import { layOut } from '../../src/layout/layout.ts';
 import { buildNetwork } from '../../src/network/build.ts';
 import { parseRunSheet } from '../../src/runsheet/parse.ts';
 import type { Tolerances } from '../../src/runsheet/types.ts';
-import type { RunNetwork } from '../../src/solve/flow-network.ts';
 import { prepareModel, type SpreadModel } from '../../src/spread/model.ts';
 import { listOutputs, type Output, pressureNodesOf } from '../../src/spread/outputs.ts';
 import { spreadOf } from '../../src/spread/spread.ts';

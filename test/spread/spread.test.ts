@@ -1,7 +1,8 @@
 import { expect, test } from 'vitest';
+import { acceptedLimits } from '../../src/asked/accepted.ts';
 import { reachName } from '../../src/network/names.ts';
 import { ductForm } from '../../src/physics/duct.ts';
-import { acceptedLimits } from '../../src/spread/accepted.ts';
+import { readTargets } from '../../src/solve/targets-wanted.ts';
 import { outputValue } from '../../src/spread/outputs.ts';
 import { spreadOf } from '../../src/spread/spread.ts';
 import { modelOf, oneDuct, outputNamed, spreadOfDrawing, varying } from './spread-of.ts';
@@ -145,8 +146,24 @@ test('a target at a node that the network lacks is refused at its line, with the
 tolerances: { depth: 5 % }
 `;
   await expect(spreadOfDrawing(oneDuct(), sheet)).rejects.toThrow(
-    'test.run.yaml:5: targets: the network has no node "wast" there; did you mean "waste"?',
+    'test.run.yaml:5: targets[0]: node: the network has no node "wast"; did you mean "waste"? (the maps of the report show them)',
   );
+});
+
+test('a target on a channel of several reaches is refused at its line unless it names one, as the command pump does', async () => {
+  const crossed = `<g fill="none" stroke="#000" stroke-width="0.2"><path id="lane" d="M10 20 H32"/><path id="side" d="M21 20 V32"/></g>
+    <circle id="feed" cx="10" cy="20" r="1"/><circle id="waste" cx="32" cy="20" r="1"/><circle id="drain" cx="21" cy="32" r="1"/>`;
+  const sheet = (reach: string): string => `${FLUID}depth: 50 um
+ports: { feed: { pressure: 10 kPa }, waste: open, drain: open }
+targets: [{ channel: lane, ${reach}velocity: 1 mm/s, by: feed }]
+tolerances: { depth: 5 % }
+`;
+  const refused =
+    'test.run.yaml:5: targets[0]: channel "lane" has 2 reaches; add reach: and one of "lane:1", "lane:2"';
+  await expect(spreadOfDrawing(crossed, sheet(''))).rejects.toThrow(refused);
+  expect(() => readTargets(varying(crossed, sheet('')))).toThrow(refused);
+  const { outputs } = await spreadOfDrawing(crossed, sheet('reach: "lane:2", '), { draws: 4 });
+  expect(outputs.filter(({ isTarget }) => isTarget).map(({ name }) => name)).toEqual(['lane:2']);
 });
 
 test('the yield counts draws in which every window and limit holds, and each number counts its own failures', async () => {

@@ -1,9 +1,10 @@
+import { hasWindow } from '../../asked/windows.ts';
 import { reachName } from '../../network/names.ts';
 import { formatNumber, type Show } from '../../runsheet/shown.ts';
 import { type Column, figures, words } from '../columns.ts';
 import { cleanText, joined } from '../plain-text.ts';
 import { quantityTexts } from '../quantities.ts';
-import { hasWindow, outsideWindows, windowTexts } from '../reach-values.ts';
+import { outsideWindows, windowTexts } from '../reach-values.ts';
 import type { ReportedCase } from '../report.ts';
 import type { CountsRow, ReachRow } from '../result-rows.ts';
 import { portQuantity, reachQuantity } from '../result-schema.ts';

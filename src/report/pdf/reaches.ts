@@ -1,8 +1,9 @@
+import { hasWindow } from '../../asked/windows.ts';
 import { countText } from '../../findings/words.ts';
 import type { Show } from '../../runsheet/shown.ts';
 import { type Column, words } from '../columns.ts';
 import { quantityColumns } from '../quantities.ts';
-import { hasWindow, outsideWindows, windowTexts } from '../reach-values.ts';
+import { outsideWindows, windowTexts } from '../reach-values.ts';
 import type { ReportedCase } from '../report.ts';
 import type { ReachRow } from '../result-rows.ts';
 import { reachQuantity } from '../result-schema.ts';
