@@ -17,6 +17,7 @@ import { seededSample, shareInterval } from './score.ts';
 
 /** What is mutated: everything that decides a number or a finding. */
 const MUTATED = [
+  'src/asked/',
   'src/physics/',
   'src/network/',
   'src/solve/',
