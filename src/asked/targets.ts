@@ -3,8 +3,8 @@ import { refuseSeveral } from '../chip/targets.ts';
 import { findNodes } from '../network/find-node.ts';
 import { nodeName, reachName } from '../network/names.ts';
 import type { Network } from '../network/types.ts';
-import { nearest } from '../runsheet/nearest.ts';
-import { quote } from '../runsheet/quote.ts';
+import { didYouMean } from '../runsheet/nearest.ts';
+import { quote, quoteSome } from '../runsheet/quote.ts';
 import type { RunSheet, TargetEntry } from '../runsheet/types.ts';
 import { reachesOfChannel } from './reaches.ts';
 
@@ -34,17 +34,13 @@ export function reachOfTarget(
     refuseTarget(
       sheet,
       index,
-      `channel ${quote(name)} has ${reaches.length} reaches; add reach: and one of ${listed(names)}`,
+      `channel ${quote(name)} has ${reaches.length} reaches; add reach: and one of ${quoteSome(names, MOST_LISTED)}`,
     );
   }
   const found = names.indexOf(reach);
   if (found >= 0) return reaches[found];
-  const near = nearest(reach, names);
-  return refuseTarget(
-    sheet,
-    index,
-    `reach: channel ${quote(name)} has no reach ${quote(reach)}; ${near === null ? `it has ${listed(names)}` : `did you mean ${quote(near)}?`}`,
-  );
+  const guess = didYouMean(reach, names) ?? `it has ${quoteSome(names, MOST_LISTED)}`;
+  return refuseTarget(sheet, index, `reach: channel ${quote(name)} has no reach ${quote(reach)}; ${guess}`);
 }
 
 /**
@@ -65,11 +61,11 @@ export function nodeOfTarget(network: Network, sheet: RunSheet, { name, index }:
       found.map((n) => nodeName(network, n)),
     );
   const names = Array.from({ length: network.nodeCount }, (_, node) => nodeName(network, node));
-  const near = nearest(name, names);
+  const guess = didYouMean(name, names) ?? `it has ${quoteSome(names, MOST_LISTED)}`;
   return refuseTarget(
     sheet,
     index,
-    `node: the network has no node ${quote(name)}; ${near === null ? `it has ${listed(names)}` : `did you mean ${quote(near)}?`} (the maps of the report show them)`,
+    `node: the network has no node ${quote(name)}; ${guess} (the maps of the report show them)`,
   );
 }
 
@@ -79,9 +75,3 @@ export function refuseTarget(sheet: RunSheet, index: number, what: string): neve
 }
 
 const MOST_LISTED = 12;
-
-function listed(names: readonly string[]): string {
-  const more = names.length - MOST_LISTED;
-  const first = names.slice(0, MOST_LISTED).map((name) => quote(name));
-  return more > 0 ? `${first.join(', ')} and ${more} more` : first.join(', ');
-}

@@ -4,7 +4,7 @@ import { passagesOf } from '../asked/passages.ts';
 import { reachesOfChannel } from '../asked/reaches.ts';
 import type { RunNetwork } from '../asked/run-network.ts';
 import { nodeOfTarget, reachOfTarget } from '../asked/targets.ts';
-import { hasWindow, wallsOf } from '../asked/windows.ts';
+import { asksOf, hasWindow, type WindowAsk, type WindowNumber, wallsOf } from '../asked/windows.ts';
 import { isAbove, isBelow } from '../asked/within.ts';
 import { roomLengthM } from '../network/lengths.ts';
 import { nodeName, reachName } from '../network/names.ts';
@@ -21,7 +21,7 @@ import {
   type Wall,
   wallShear,
 } from '../physics/duct-state.ts';
-import type { ChannelEntry, PumpLimitEntry, ShearWindow, TargetEntry } from '../runsheet/types.ts';
+import type { ChannelEntry, PumpLimitEntry, TargetEntry } from '../runsheet/types.ts';
 import type { FlowState } from '../solve/types.ts';
 import type { ChipState, SpreadModel } from './model.ts';
 
@@ -254,83 +254,79 @@ function windowOutputs(
   settings: ChannelEntry,
 ): Output[] {
   const { network } = at;
-  const { wallShear, flow } = settings;
-  const reaches = [...reachesOfChannel(network, channel)];
+  const asks = asksOf(settings);
   const { name: channelName } = network.chip.channels[channel];
   const outputs: Output[] = [];
-  for (const reach of reaches) {
+  for (const reach of reachesOfChannel(network, channel)) {
     const names = [reachName(network, reach), channelName];
-    const flowLimits = acceptedLimits(at, 'flow-window', names, 'm³/s', flow?.min ?? null, flow?.max ?? null);
-    outputs.push({
-      ...reachFlowOutput(network, nominal, reach),
-      ...flowLimits,
-      hasWindow: flow !== null,
-    });
-    for (const wall of wallsOf(settings)) outputs.push(...shearOutputs(at, reach, wall, wallShear, names));
+    outputs.push(
+      asked(at, asks, names, reachFlowOutput(network, nominal, reach), ({ kind }) => kind === 'flow'),
+    );
+    for (const wall of wallsOf(settings)) outputs.push(...shearOutputs(at, reach, wall, asks, names));
   }
   outputs.push(...timeOutputs(at, channel, nominal.reachFlow));
   return outputs;
+}
+
+/** An output with what the windows ask of its number, as far as nobody has taken on other values. */
+function asked(
+  at: RunNetwork,
+  asks: readonly WindowAsk[],
+  names: readonly string[],
+  output: Output,
+  isMeant: (number: WindowNumber) => boolean,
+): Output {
+  const meant = asks.filter(({ of }) => isMeant(of));
+  if (meant.length === 0) return output;
+  const limit = (side: WindowAsk['side']): number | null =>
+    meant.find((ask) => ask.side === side)?.limit ?? null;
+  const limits = acceptedLimits(at, meant[0].rule, names, output.unit, limit('least'), limit('most'));
+  return { ...output, ...limits, hasWindow: true };
 }
 
 /** Times through the reaches that fluid passes one after the other under these flows, with what the channel's window asks of them. */
 export function timeOutputs(at: RunNetwork, channel: number, reachFlow: Float64Array): Output[] {
   const { network, run } = at;
   const { name } = network.chip.channels[channel];
-  const window = run.channels[channel]?.residenceTime ?? null;
-  const reaches = [...reachesOfChannel(network, channel)];
-  return passagesOf(network, reaches, reachFlow).flatMap((passage): Output[] => {
+  const settings = run.channels[channel];
+  const asks = settings === null ? [] : asksOf(settings);
+  const hasWindow = asks.some(({ of }) => of.kind === 'time');
+  return passagesOf(network, [...reachesOfChannel(network, channel)], reachFlow).flatMap((passage) => {
     const names = [...passage.map((r) => reachName(network, r)), name];
-    const { min, max } = acceptedLimits(
-      at,
-      'residence-window',
-      names,
-      's',
-      window?.min ?? null,
-      window?.max ?? null,
+    const [mean, fastest] = (['mean', 'fastest'] as const).map((end) =>
+      asked(at, asks, names, timeOutput(network, passage, end), (of) => of.kind === 'time' && of.at === end),
     );
-    const hasWindow = window !== null;
-    const mean = { ...timeOutput(network, passage, 'mean'), max, hasWindow };
-    return min === null ? [mean] : [mean, { ...timeOutput(network, passage, 'fastest'), min, hasWindow }];
+    return [{ ...mean, hasWindow }, ...(fastest.min === null ? [] : [fastest])];
   });
 }
 
-/** Without `over` the mean must reach the least and the peak must not pass the most; with it the share between them counts. */
+/** Mean and peak on a wall, also where no window asks for them; the share of it inside the window where one does. */
 function shearOutputs(
   at: RunNetwork,
   reach: number,
   wall: Wall,
-  window: ShearWindow | null,
+  asks: readonly WindowAsk[],
   names: readonly string[],
 ): Output[] {
   const { network } = at;
-  const whole = window !== null && window.over === null ? window : null;
-  const { min, max } = acceptedLimits(
-    at,
-    'shear-window',
-    names,
-    'Pa',
-    whole?.min ?? null,
-    whole?.max ?? null,
-  );
-  const hasWindow = whole !== null;
-  const outputs: Output[] = [
-    { ...shearOutput(network, reach, wall, 'mean'), min, hasWindow: hasWindow && min !== null },
-    { ...shearOutput(network, reach, wall, 'peak'), max, hasWindow: hasWindow && max !== null },
-  ];
-  if (window !== null && window.over !== null) {
-    const range = { minPa: window.min, maxPa: window.max };
-    outputs.push({
+  const shears = (['mean', 'peak'] as const).map((end) => {
+    const plain = shearOutput(network, reach, wall, end);
+    const output = asked(at, asks, names, plain, (of) => of.kind === 'shear' && of.at === end);
+    return { ...output, hasWindow: output.min !== null || output.max !== null };
+  });
+  const shares = asks.flatMap(({ of }) => {
+    if (of.kind !== 'share inside') return [];
+    const share: Output = {
       ...PLAIN,
       on: 'reach',
       name: reachName(network, reach),
       quantity: `${wall}_share_inside_window`,
       unit: '',
-      min: acceptedLimits(at, 'shear-window', names, '', window.over, null).min,
-      hasWindow: true,
-      subject: { kind: 'share inside', reach, wall, range },
-    });
-  }
-  return outputs;
+      subject: { kind: 'share inside', reach, wall, range: of.range },
+    };
+    return [asked(at, asks, names, share, ({ kind }) => kind === 'share inside')];
+  });
+  return [...shears, ...shares];
 }
 
 function reachFlowOutput(network: Network, nominal: FlowState, reach: number): Output {
