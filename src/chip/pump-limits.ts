@@ -12,18 +12,20 @@ export interface PumpLimits {
 /** What pressure sources and syringe pumps for chips usually do. Usual practice, no source. */
 const USUAL = { minPressurePa: -80e3, maxPressurePa: 700e3, maxFlowM3s: 10e-6 / 60 } as const;
 
-/**
- * The limits that the run sheet gives; null where it gives none for the port.
- * @param drawnName of the port
- */
-export function givenPumpLimits({ sheet }: Pick<Run, 'sheet'>, drawnName: string | null): PumpLimits | null {
-  const given = drawnName === null ? undefined : sheet?.pumpLimits[drawnName];
-  return given === undefined ? null : limitsOf(given, {});
+/** What the run sheet says of the pump at the port of that drawn name; null where it says nothing. */
+export function pumpEntryOf({ sheet }: Pick<Run, 'sheet'>, drawnName: string | null): PumpLimitEntry | null {
+  return (drawnName === null ? undefined : sheet?.pumpLimits[drawnName]) ?? null;
+}
+
+/** The limits that the run sheet gives; null where it gives none for the port. */
+export function givenPumpLimits(run: Pick<Run, 'sheet'>, drawnName: string | null): PumpLimits | null {
+  const given = pumpEntryOf(run, drawnName);
+  return given === null ? null : limitsOf(given, {});
 }
 
 /** What a found setting is held against: what the run sheet gives, else what is usual. */
-export function foundPumpLimits({ sheet }: Pick<Run, 'sheet'>, drawnName: string | null): PumpLimits {
-  return limitsOf((drawnName === null ? undefined : sheet?.pumpLimits[drawnName]) ?? {}, USUAL);
+export function foundPumpLimits(run: Pick<Run, 'sheet'>, drawnName: string | null): PumpLimits {
+  return limitsOf(pumpEntryOf(run, drawnName) ?? {}, USUAL);
 }
 
 function limitsOf(given: Partial<PumpLimitEntry>, usual: Partial<typeof USUAL>): PumpLimits {

@@ -1,4 +1,5 @@
 import type { RunNetwork } from '../asked/run-network.ts';
+import { pumpEntryOf } from '../chip/pump-limits.ts';
 import { flowForShear, type ShearAt } from '../physics/duct-state.ts';
 import type { Show, Unit } from '../runsheet/shown.ts';
 import type { PumpLimitEntry, Window } from '../runsheet/types.ts';
@@ -37,8 +38,8 @@ export function pumpCurve({ network, run }: RunNetwork, target: FoundTarget, sho
   const { wanted, response, range } = target;
   const { entry, measure, drive, port, name } = wanted;
   const { setting, observed } = response;
-  const pumpLimits = run.sheet?.pumpLimits[entry.by];
-  const limits = pumpLimits === undefined ? [] : limitLines(target, pumpLimits);
+  const pumpLimits = pumpEntryOf(run, entry.by);
+  const limits = pumpLimits === null ? [] : limitLines(target, pumpLimits);
   const windows = windowsOf({ network, run }, target);
   const size = Math.max(Math.abs(setting), ...endsOf(range).map(Math.abs));
   const near = (at: number): boolean => Math.abs(at) <= FARTHEST * size;

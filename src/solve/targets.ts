@@ -9,7 +9,7 @@
 import type { RunNetwork } from '../asked/run-network.ts';
 import { refuseTarget } from '../asked/targets.ts';
 import { remembered } from '../by-key.ts';
-import { foundPumpLimits, pumpLimitValues } from '../chip/pump-limits.ts';
+import { foundPumpLimits, pumpEntryOf, pumpLimitValues } from '../chip/pump-limits.ts';
 import type { Run } from '../chip/types.ts';
 import { InputError } from '../errors.ts';
 import type { Network } from '../network/types.ts';
@@ -87,7 +87,7 @@ export function findSettings(at: RunNetwork): FoundSettings {
   const ways = waysOf(at.run, system, wanted);
   const first = wanted.map((target, i) => firstAim(target, ways[i]));
   let solution = settle(system, wanted, first);
-  const aims = wanted.map((target, i) => betterAim(system, sheet, target, i, ways[i], solution, first[i]));
+  const aims = wanted.map((target, i) => betterAim(system, target, i, ways[i], solution, first[i]));
   if (aims.some((aim, i) => aim !== first[i])) solution = settle(system, wanted, aims);
   return {
     targets: wanted.map((target, i) => foundTarget(system, target, i, ways[i], solution)),
@@ -324,15 +324,14 @@ function firstAim({ entry: { value }, measure }: Wanted, way: 1 | -1): number {
 /** Of a window under pump limits: the middle of what of it the pump can do, the other settings as found at first. */
 function betterAim(
   system: System,
-  sheet: RunSheet,
   target: Wanted,
   i: number,
   way: 1 | -1,
   solution: Solution,
   aim: number,
 ): number {
-  const limits = sheet.pumpLimits[target.entry.by];
-  if (typeof target.entry.value === 'number' || limits === undefined) return aim;
+  const limits = pumpEntryOf(system.run, target.entry.by);
+  if (typeof target.entry.value === 'number' || limits === null) return aim;
   const response = responseOf(system, target, i, solution);
   const range = rangeOf(target, way, response);
   const able = settingsWithin(response, limits);

@@ -6,6 +6,7 @@ import type { RunNetwork } from '../asked/run-network.ts';
 import { nodeOfTarget, reachOfTarget } from '../asked/targets.ts';
 import { asksOf, hasWindow, type WindowAsk, type WindowNumber, wallsOf } from '../asked/windows.ts';
 import { isAbove, isBelow } from '../asked/within.ts';
+import { pumpEntryOf } from '../chip/pump-limits.ts';
 import { roomLengthM } from '../network/lengths.ts';
 import { nodeName, reachName } from '../network/names.ts';
 import type { Network } from '../network/types.ts';
@@ -196,11 +197,11 @@ function portOutputs(at: RunNetwork): Output[] {
   const { network, run } = at;
   return network.chip.ports.flatMap(({ name, drawnName }, port): Output[] => {
     const { condition, tubing } = run.ports[port];
-    const pump = drawnName === null ? undefined : run.sheet?.pumpLimits[drawnName];
+    const pump = pumpEntryOf(run, drawnName);
     const isShut = condition.kind === 'sealed' || condition.kind === 'unset';
     const hasSupply = tubing.length > 0 && !isShut;
     const pressure = (end: 'chip' | 'supply'): Output => {
-      const atPump = end === 'supply' || !hasSupply ? pump : undefined;
+      const atPump = end === 'supply' || !hasSupply ? pump : null;
       return {
         ...PLAIN,
         ...pressureLimits(at, name, atPump),
@@ -227,7 +228,7 @@ function portOutputs(at: RunNetwork): Output[] {
 }
 
 /** What the chip holds, and at the end where the pump is what the pump does. */
-function pressureLimits(at: RunNetwork, port: string, pump: PumpLimitEntry | undefined): KeptLimits {
+function pressureLimits(at: RunNetwork, port: string, pump: PumpLimitEntry | null): KeptLimits {
   const { maxPressurePa, minPressurePa } = at.run.limits;
   const least = Math.max(minPressurePa?.value ?? NEAR_VACUUM_PA, NEAR_VACUUM_PA);
   const low = acceptedLimits(at, 'under-pressure', [port], 'Pa', least, null).min;
