@@ -212,6 +212,22 @@ describe('junctions', () => {
     expect(resolved(legs(W, 1.1 * W, 0)).kinds).toEqual({ 'T of unequal ducts not computed': 1 });
   });
 
+  it.each([
+    [9, 0.62],
+    [20, 0.62 + (1.6 / Math.PI) * Math.log(2)],
+  ])(
+    'bounds what it does not compute by the narrowest width, and more where another is over ten times as wide: %d w',
+    (ratio, share) => {
+      const { bound, kinds } = resolved([
+        { name: 'main', widthMm: W, lines: [[-30, 0, 30, 0]] },
+        { name: 'side', widthMm: ratio * W, lines: [[0, 0, 0, 60]] },
+      ]);
+      expect(kinds).toEqual({ 'T of unequal ducts not computed': 1 });
+      expect(bound['main:1']).toBeCloseTo(share * W, 12);
+      expect(bound.side).toBeCloseTo(share * W, 12);
+    },
+  );
+
   it('passes from a narrow side to an equal one without a jump over 0.01 w', () => {
     const near = resolved(legs(1.0001 * W, W, 0));
     const equal = resolved(legs(W, W, 0));
