@@ -24,7 +24,7 @@ export function displayWidth(text: string): number {
 
 function characterWidth(character: string): number {
   if (/[\p{Mn}\p{Me}\p{Cf}\p{Cc}]/u.test(character)) return 0;
-  return WIDE.test(character) ? 2 : 1;
+  return character >= '\u1100' && WIDE.test(character) ? 2 : 1;
 }
 
 /** East Asian Width W and F (Unicode TR 11), and emoji. */

@@ -1,5 +1,4 @@
 import PDFDocument from 'pdfkit';
-import { remembered } from '../../by-key.ts';
 import { cleanText, wrapMeasured } from '../plain-text.ts';
 import { type EmbeddedFont, embeddedFont } from './embedded-font.ts';
 import type { PaperSize, PdfOptions } from './options.ts';
@@ -214,8 +213,14 @@ export class Paper {
   readable(text: string, weight: Weight = 'regular'): string {
     let readable = '';
     const { font, shown } = this.embedded[weight];
-    for (const character of cleanText(text))
-      readable += remembered(shown, character, () => shownBy(font, character));
+    for (const character of cleanText(text)) {
+      let one = shown.get(character);
+      if (one === undefined) {
+        one = shownBy(font, character);
+        shown.set(character, one);
+      }
+      readable += one;
+    }
     return readable;
   }
 
@@ -266,7 +271,7 @@ export class Paper {
     await new Promise((resolve, reject) => {
       doc.on('error', reject).on('end', resolve).end();
     });
-    return new Uint8Array(await new Blob(this.chunks).arrayBuffer());
+    return inOne(this.chunks);
   }
 
   private use({ size, weight = 'regular' }: TextStyle): void {
@@ -284,4 +289,14 @@ function shownBy(font: EmbeddedFont['font'], character: string): string {
 /** Height of a line of text: the font's ascender to descender, and a little. */
 export function lineHeight({ size }: TextStyle): number {
   return 1.26 * size;
+}
+
+function inOne(chunks: readonly Uint8Array[]): Uint8Array {
+  const whole = new Uint8Array(chunks.reduce((sum, { length }) => sum + length, 0));
+  let at = 0;
+  for (const chunk of chunks) {
+    whole.set(chunk, at);
+    at += chunk.length;
+  }
+  return whole;
 }

@@ -1,4 +1,3 @@
-import { remembered } from '../../by-key.ts';
 import { embeddedFont, type Glyph, type GlyphRun } from './embedded-font.ts';
 
 /**
@@ -17,7 +16,9 @@ export function layOutPlainly(doc: PDFKit.PDFDocument): void {
     const glyph = embedded.font.glyphForCodePoint(character.codePointAt(0) ?? 0);
     const advance = glyph.advanceWidth * embedded.scale;
     const position = { xAdvance: advance, yAdvance: 0, xOffset: 0, yOffset: 0, advanceWidth: advance };
-    return { glyph, position };
+    const entry = { glyph, position };
+    known.set(character, entry);
+    return entry;
   };
   embedded.layout = (text, features, onlyWidth) => {
     if (!isPlain(text)) return shaped(text, features, onlyWidth);
@@ -25,7 +26,7 @@ export function layOutPlainly(doc: PDFKit.PDFDocument): void {
     const positions: GlyphRun['positions'][number][] = [];
     let advanceWidth = 0;
     for (const character of text) {
-      const { glyph, position } = remembered(known, character, () => placed(character));
+      const { glyph, position } = known.get(character) ?? placed(character);
       glyphs.push(glyph);
       positions.push(position);
       advanceWidth += position.advanceWidth;
