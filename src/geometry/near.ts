@@ -50,9 +50,11 @@ export function findNearPairs(
   const box = pieceBoxes(pieces, (i) => pieces.half[i] * capFactor(i) + pieces.bulge[i]);
   const index = indexBoxes(box);
 
-  const pairA: number[] = [];
-  const pairB: number[] = [];
-  const pairDistance: number[] = [];
+  // twenty million pairs fit into columns that grow, and hardly into lists
+  let pairA = new Int32Array(Math.max(64, 2 * n));
+  let pairB = new Int32Array(pairA.length);
+  let pairDistance = new Float64Array(pairA.length);
+  let pairCount = 0;
   for (let i = 0; i < n; i++) {
     const b = 4 * i;
     const near = index.search(
@@ -67,26 +69,33 @@ export function findNearPairs(
       const strips = pieces.half[i] * capFactor(i) + pieces.half[j] * capFactor(j);
       if (distance > strips + withinMm + pieces.bulge[i] + pieces.bulge[j]) continue;
       if (isOwnBend(pieces, i, j, distance)) continue;
-      if (pairA.length === MAX_NEAR_PAIRS) {
-        throw new InputError(
-          where,
-          `more than ${MAX_NEAR_PAIRS} pairs of segments lie close together (near-pair limit): the drawing repeats or piles up its strokes; remove the copies`,
-        );
+      if (pairCount === pairA.length) {
+        if (pairCount >= MAX_NEAR_PAIRS) {
+          throw new InputError(
+            where,
+            `more than ${MAX_NEAR_PAIRS} pairs of segments lie close together (near-pair limit): the drawing repeats or piles up its strokes; remove the copies`,
+          );
+        }
+        const size = Math.min(MAX_NEAR_PAIRS, 2 * pairCount);
+        pairA = grown(pairA, new Int32Array(size));
+        pairB = grown(pairB, new Int32Array(size));
+        pairDistance = grown(pairDistance, new Float64Array(size));
       }
-      pairA.push(i);
-      pairB.push(j);
-      pairDistance.push(distance);
+      pairA[pairCount] = i;
+      pairB[pairCount] = j;
+      pairDistance[pairCount] = distance;
+      pairCount++;
     }
   }
-  const columns = { pairA: new Int32Array(pairA), pairB: new Int32Array(pairB) };
+  const columns = { pairA: pairA.subarray(0, pairCount), pairB: pairB.subarray(0, pairCount) };
   const { first: firstPair, item: side } = sidesByNode(n, columns.pairA, columns.pairB);
   return {
     pieces,
     index,
     withinMm,
-    pairCount: pairA.length,
+    pairCount,
     ...columns,
-    pairDistance: new Float64Array(pairDistance),
+    pairDistance: pairDistance.subarray(0, pairCount),
     firstPair,
     pairOf: side.map((s) => s >> 1),
   };
@@ -121,6 +130,11 @@ export function piecesNear(
     found.push(pairA[pair] === piece ? pairB[pair] : pairA[pair]);
   }
   return found;
+}
+
+function grown<Column extends Int32Array | Float64Array>(column: Column, into: Column): Column {
+  into.set(column);
+  return into;
 }
 
 function areConsecutive(pieces: Pieces, i: number, j: number): boolean {
