@@ -125,7 +125,12 @@ async function spreadPart(
       `tolerances: nothing in them moves anything on this chip${inCase(name)}${idle.length === 0 ? '' : ` (${idle.slice(0, 3).join('; ')})`}; ${TOLERANCES_EXAMPLE}`,
     );
   }
-  return { spread: await spreadOf(analysis, tolerances, asked, asked.paceOf?.(name)) };
+  const pace = asked.paceOf?.(name);
+  try {
+    return { spread: await spreadOf(analysis, tolerances, asked, pace) };
+  } finally {
+    pace?.end?.();
+  }
 }
 
 function refuseNoTargets(cases: readonly SheetCase[], file: string): void {

@@ -2,11 +2,10 @@ import { createHash } from 'node:crypto';
 import { readFile, stat } from 'node:fs/promises';
 import { basename, isAbsolute, join } from 'node:path';
 import { InputError } from '../errors.ts';
+import { MAX_RUN_SHEET_BYTES } from '../runsheet/tree.ts';
+import { MAX_SVG_BYTES } from '../svg/limits.ts';
 import { utf8Length } from '../utf8-length.ts';
 import type { Io } from './io.ts';
-
-const MAX_LAYOUT_BYTES = 32 * 1024 * 1024;
-const MAX_RUN_SHEET_BYTES = 1024 * 1024;
 
 export interface InputFile {
   /** As given on the command line, for messages. */
@@ -22,7 +21,7 @@ export interface InputFile {
 
 /** Reads the layout. Errors: InputError for a missing file, a folder, one that can't be read, one over the limit. */
 export async function readLayout(path: string, io: Io): Promise<InputFile> {
-  return readInput(path, io, MAX_LAYOUT_BYTES, 'layout', 'the layout is an SVG file; check the path');
+  return readInput(path, io, MAX_SVG_BYTES, 'layout', 'the layout is an SVG file; check the path');
 }
 
 /**
@@ -111,7 +110,7 @@ function decode(bytes: Uint8Array, path: string): string {
 function tooLarge(path: string, what: string, limit: number): InputError {
   return new InputError(
     path,
-    `the ${what} is larger than ${limit / 1024 / 1024} MB (${what} size limit); remove what is not needed, such as embedded images`,
+    `the ${what} is larger than ${limit / 1e6} MB (${what} size limit); remove what is not needed, such as embedded images`,
   );
 }
 

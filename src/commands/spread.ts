@@ -101,6 +101,7 @@ function drawingOf(io: Io, options: SpreadOptions, draws: number): Drawing {
       let next = performance.now() + REST_EVERY_MS;
       return {
         due: () => performance.now() >= next,
+        end,
         rest: async (done) => {
           bar.update(done);
           await setImmediate();

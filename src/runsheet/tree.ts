@@ -57,7 +57,7 @@ export type TreeNode = TextNode | MapNode | ListNode;
  * @throws InputError naming file and line
  */
 export function parseTree(text: string, file: string): MapNode {
-  if (utf8Length(text) > LARGEST_BYTES) {
+  if (utf8Length(text) > MAX_RUN_SHEET_BYTES) {
     throw new InputError(
       file,
       'is over the limit "run sheet size" of 1 MB; leave out what the chip does not need',
@@ -141,7 +141,7 @@ export function lineAt(root: TreeNode, path: readonly (string | number)[]): numb
   return line;
 }
 
-const LARGEST_BYTES = 1_000_000;
+export const MAX_RUN_SHEET_BYTES = 1_000_000;
 /** A run sheet needs six levels. */
 const DEEPEST = 32;
 

@@ -32,7 +32,6 @@ export type PortCondition = PortEntry['condition'];
 export type TubingPiece = PortEntry['tubing'][number];
 export type LayerEntry = Values['layers'][string] & Placed;
 export type ChannelEntry = Values['channels'][string] & Placed;
-export type ShearWindow = NonNullable<ChannelEntry['wallShear']>;
 export type Window = NonNullable<ChannelEntry['flow']>;
 export type FluidSpec = NonNullable<Values['fluid']>;
 export type ProcessName = NonNullable<Values['process']>;

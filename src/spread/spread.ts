@@ -24,6 +24,8 @@ export interface SpreadOptions {
 export interface Pace {
   readonly due: () => boolean;
   readonly rest: (done: number) => Promise<'go on' | 'stop'>;
+  /** Called once no draw follows. */
+  readonly end?: () => void;
 }
 
 const NEVER: Pace = { due: () => false, rest: async () => 'go on' };
